@@ -1,0 +1,1 @@
+//! Published formulations as notation, with what is known of them.

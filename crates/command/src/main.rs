@@ -1,0 +1,2 @@
+//! Placeholder until the crate is written.
+fn main() {}

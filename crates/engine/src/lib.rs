@@ -1,0 +1,1 @@
+//! Request to reply in slices: all that a worker or the command drives.

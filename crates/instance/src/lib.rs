@@ -1,0 +1,1 @@
+//! Sets, tables and geometry, and the readers of pasted text.

@@ -1,0 +1,1 @@
+//! Floating-point simplex: rows and columns in, basis, duals and rays out.

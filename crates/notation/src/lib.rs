@@ -1,0 +1,1 @@
+//! Journal notation: text to checked formulation to model.

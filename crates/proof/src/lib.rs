@@ -1,0 +1,1 @@
+//! Exact check of bounds, rays and points.

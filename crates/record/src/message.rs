@@ -1,0 +1,271 @@
+//! Messages between the page and its workers, sent as postcard. Not promised between versions:
+//! page and worker are one file.
+
+use serde::{Deserialize, Serialize};
+
+use crate::event::{Branching, Event, NodeNumber, NodeState};
+use crate::results::{ErrorReport, FamilyReport, RootReport, SearchReport};
+use crate::scenario::{FamilyState, InstanceText, Rival, Run};
+
+/// The number of a run of a lane: replies of an older run are dropped by the page.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize)]
+pub struct RunNumber(pub u32);
+
+/// Page to worker.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub enum Request {
+    /// Solve a small model, so that the module is compiled before the first real one.
+    Warm,
+    /// Read an instance and say what was understood. Answered by [`Reply::InstanceRead`].
+    Read(InstanceText),
+    /// List the catalogue. Answered by [`Reply::Catalogue`].
+    List,
+    /// Load a rival and solve its root. Answered by [`Reply::Understood`] and [`Reply::Root`].
+    Load(Box<LaneJob>),
+    /// Search on: to the end, or for a number of nodes. Answered by [`Reply::Batch`]es.
+    Run {
+        /// Pause after this many further nodes.
+        nodes: Option<u32>,
+    },
+    /// Stand still after the slice in hand. Answered by [`Reply::Paused`].
+    Pause,
+    /// Give up the run. Answered by [`Reply::Done`].
+    Stop,
+    /// Show a node. Answered by [`Reply::Node`].
+    Inspect(NodeNumber),
+}
+
+/// A rival to load.
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
+pub struct LaneJob {
+    /// The run that replies carry.
+    pub run: RunNumber,
+    /// The instance.
+    pub instance: Option<InstanceText>,
+    /// The rival.
+    pub rival: Rival,
+    /// Limits and rules.
+    pub settings: Run,
+    /// The scenario's seed.
+    pub seed: u64,
+}
+
+/// Worker to page: the run it belongs to and its place in the stream.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct Envelope {
+    /// The run.
+    pub run: RunNumber,
+    /// Counts up from 0 in each worker.
+    pub sequence: u64,
+    /// The reply.
+    pub reply: Reply,
+}
+
+/// What a worker says.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub enum Reply {
+    /// Warm: ready for work.
+    Ready {
+        /// The engine's version.
+        engine: String,
+    },
+    /// What was understood of an instance.
+    InstanceRead(Box<InstanceReport>),
+    /// The shipped formulations.
+    Catalogue(Vec<CatalogueEntry>),
+    /// A rival was parsed, checked and expanded.
+    Understood(Box<RivalReport>),
+    /// Long work on one thing goes on.
+    Progress(Progress),
+    /// The root is solved.
+    Root(Box<RootReport>),
+    /// Events of the search since the last batch.
+    Batch(Vec<Event>),
+    /// The search stands still and can go on.
+    Paused(Box<SearchReport>),
+    /// The search has ended.
+    Done(Box<SearchReport>),
+    /// A node in full.
+    Node(Box<NodeDetail>),
+    /// The request could not be carried out.
+    Failed(ErrorReport),
+}
+
+/// How far long work is.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct Progress {
+    /// What is being done, as a clause: "solving the relaxation".
+    pub doing: String,
+    /// Work done so far, in non-zeros touched.
+    pub ticks: u64,
+    /// Simplex iterations so far.
+    pub iterations: u64,
+}
+
+/// One shipped formulation.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct CatalogueEntry {
+    /// The id, e.g. `atsp/labels`.
+    pub id: String,
+    /// The title.
+    pub title: String,
+    /// The family it belongs to in words: "round trip, directed".
+    pub family: String,
+    /// Whether it is only a relaxation.
+    pub relaxation: bool,
+    /// Its citation.
+    pub citation: String,
+    /// The notation text.
+    pub text: String,
+}
+
+/// What was understood of an instance, and what was not.
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
+pub struct InstanceReport {
+    /// The reader that read it.
+    pub reader: String,
+    /// The title found in the text, if any.
+    pub title: String,
+    /// Whether an instance came out of it.
+    pub usable: bool,
+    /// What was understood, one sentence each.
+    pub facts: Vec<String>,
+    /// What was not, by line.
+    pub complaints: Vec<Complaint>,
+    /// The stops, for the map.
+    pub stops: Vec<Stop>,
+    /// Whether the places are computed from the distances instead of given.
+    pub places_computed: bool,
+    /// The distance matrix by rows, for the value grid; `None` where there is no drive.
+    pub matrix: Vec<Option<f64>>,
+    /// The unit of the values, where it is known ("minutes").
+    pub unit: String,
+}
+
+/// A stop on the map.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct Stop {
+    /// Its label.
+    pub label: String,
+    /// Place across, growing to the right.
+    pub x: f64,
+    /// Place along, growing upwards.
+    pub y: f64,
+}
+
+/// A complaint about a text: what is wrong, where, and how to mend it.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Complaint {
+    /// Whether it is an error (`true`) or a warning.
+    pub error: bool,
+    /// A stable code.
+    pub code: String,
+    /// The line, from 1.
+    pub line: u32,
+    /// The column in characters, from 1.
+    pub column: u32,
+    /// First UTF-16 unit of the place in the text.
+    pub start: u32,
+    /// One past its last UTF-16 unit.
+    pub end: u32,
+    /// What is wrong.
+    pub message: String,
+    /// How to mend it; may be empty.
+    pub mend: String,
+}
+
+/// What a rival is once it is expanded.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct RivalReport {
+    /// Its title.
+    pub title: String,
+    /// Whether larger is better.
+    pub maximise: bool,
+    /// Rows in the relaxation.
+    pub rows: u32,
+    /// Columns.
+    pub columns: u32,
+    /// Columns that must be whole.
+    pub integer_columns: u32,
+    /// Entries.
+    pub nonzeros: u64,
+    /// Its families.
+    pub families: Vec<FamilyReport>,
+    /// Names of the columns in order, shown as `x[Ash → Birch]`.
+    pub column_names: Vec<String>,
+    /// Warnings of notation.
+    pub complaints: Vec<Complaint>,
+}
+
+/// A node in full.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct NodeDetail {
+    /// Its number.
+    pub node: NodeNumber,
+    /// How it stands.
+    pub state: NodeState,
+    /// Its depth; the root's is 0.
+    pub depth: u32,
+    /// Its own bound.
+    pub bound: Option<f64>,
+    /// The bound as an exact fraction, when it was checked in exact arithmetic.
+    pub checked_bound: Option<String>,
+    /// The branchings from the root to it.
+    pub path: Vec<Branching>,
+    /// Every column with a value other than 0, or that is fractional.
+    pub values: Vec<ColumnValue>,
+    /// Places of solution on the map: arcs with their value.
+    pub arcs: Vec<Arc>,
+    /// Members of families over subsets that the solution violates, with their sets.
+    pub violated: Vec<ViolatedSubset>,
+    /// Rows of the ray of an infeasible node, named, with multipliers.
+    pub ray: Vec<(String, f64)>,
+}
+
+/// The value of a column at a node.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct ColumnValue {
+    /// The column.
+    pub column: u32,
+    /// Its value.
+    pub value: f64,
+    /// Its reduced cost.
+    pub reduced_cost: f64,
+    /// Its cost in the objective.
+    pub cost: f64,
+    /// Whether it must be whole and is not.
+    pub fractional: bool,
+}
+
+/// An arc to draw, by stops.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct Arc {
+    /// Where from, by place in [`InstanceReport::stops`].
+    pub from: u32,
+    /// Where to.
+    pub to: u32,
+    /// The value.
+    pub value: f64,
+    /// The column.
+    pub column: u32,
+}
+
+/// A violated member of a family over subsets.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct ViolatedSubset {
+    /// The family.
+    pub family: String,
+    /// The labels of the set.
+    pub subset: Vec<String>,
+    /// By how much the row is violated.
+    pub violation: f64,
+}
+
+/// A change of a family's state, as the page's toggles make it.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct FamilyChoice {
+    /// The family.
+    pub family: String,
+    /// Its new state.
+    pub state: FamilyState,
+}

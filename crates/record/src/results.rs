@@ -1,0 +1,163 @@
+//! The JSON objects of `hullward run --json`. Field names are fixed; new ones may be added.
+
+use std::collections::BTreeMap;
+
+use serde::{Deserialize, Serialize};
+
+use crate::scenario::FamilyState;
+
+/// How a relaxation or a search ended.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "lowercase")]
+pub enum Status {
+    /// Solved to the end.
+    Optimal,
+    /// There is no point.
+    Infeasible,
+    /// The objective has no bound.
+    Unbounded,
+    /// A limit stopped it.
+    Limit,
+    /// It could not be run.
+    Error,
+}
+
+/// What one rival gave.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct RivalResult {
+    /// The scenario's title.
+    pub scenario: String,
+    /// The rival's letter.
+    pub rival: String,
+    /// The rival's title.
+    pub title: String,
+    /// Written rows, not domain lines.
+    pub rows: u32,
+    /// Columns.
+    pub columns: u32,
+    /// Columns that must be whole.
+    pub integer_columns: u32,
+    /// Entries.
+    pub nonzeros: u64,
+    /// Its families.
+    pub families: Vec<FamilyReport>,
+    /// The relaxation.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub root: Option<RootReport>,
+    /// The search.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub search: Option<SearchReport>,
+    /// Why there is no result.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub error: Option<ErrorReport>,
+    /// Times, apart from everything that must be equal between machines.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub timing: Option<Timing>,
+}
+
+/// One constraint family.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct FamilyReport {
+    /// Its name.
+    pub name: String,
+    /// Where its rows stand.
+    pub state: FamilyState,
+    /// Rows written from the start.
+    pub rows: u32,
+    /// Rows that separation added at the root.
+    pub added: u32,
+    /// Coefficients by power of ten.
+    pub decades: BTreeMap<String, u64>,
+    /// How it is separated, in words ("exact minimum cut"); empty when it is not.
+    #[serde(default)]
+    pub separation: String,
+}
+
+/// The relaxation of the formulation as it is meant.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct RootReport {
+    /// How it ended.
+    pub status: Status,
+    /// The bound in the direction of the objective.
+    pub bound: Option<f64>,
+    /// Whether the bound (or the infeasibility) was checked in exact arithmetic.
+    pub checked: bool,
+    /// The exact bound that was proved, as a fraction: "756/5".
+    pub checked_bound: Option<String>,
+    /// What an independent LP code found, where one was asked.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub second_opinion: Option<f64>,
+    /// Simplex iterations.
+    pub iterations: u64,
+    /// Whole columns with a fractional value.
+    pub fractional: u32,
+    /// Rounds of separation.
+    pub rounds: u32,
+    /// Rows that separation added.
+    pub added: u32,
+    /// Rows of a Farkas ray, by name with multiplier, when infeasible.
+    #[serde(skip_serializing_if = "Vec::is_empty", default)]
+    pub ray: Vec<(String, f64)>,
+    /// What ended it early, when the status is `limit`.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub stopped: Option<String>,
+}
+
+/// What a search gave, so far or at its end.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct SearchReport {
+    /// How it ended.
+    pub status: Status,
+    /// The bound of the whole tree.
+    pub bound: Option<f64>,
+    /// The best solution's value.
+    pub incumbent: Option<f64>,
+    /// |incumbent − bound| / |incumbent|.
+    pub gap: Option<f64>,
+    /// Nodes solved.
+    pub nodes: u32,
+    /// Nodes still open.
+    pub open: u32,
+    /// Simplex iterations.
+    pub iterations: u64,
+    /// Non-zeros touched: the same on every machine.
+    pub work: u64,
+    /// The best solution: variable, indices, value, for every value other than 0.
+    pub solution: Vec<SolutionEntry>,
+    /// Whether every leaf and the solution were checked in exact arithmetic.
+    pub checked: bool,
+    /// What stopped it, when the status is `limit`.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub stopped: Option<String>,
+}
+
+/// One value of a solution; written as `["x","Ash","Birch",1.0]`.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct SolutionEntry {
+    /// The variable.
+    pub variable: String,
+    /// Its indices.
+    pub indices: Vec<String>,
+    /// The value.
+    pub value: f64,
+}
+
+/// Why there is no result.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct ErrorReport {
+    /// What is wrong, in one clause.
+    pub message: String,
+    /// Each reason with its place in the text it is about.
+    pub complaints: Vec<crate::message::Complaint>,
+    /// Which text the places are in: "instance", "rival" or "scenario".
+    pub place: String,
+}
+
+/// Times in milliseconds.
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
+pub struct Timing {
+    /// The root.
+    pub root_ms: f64,
+    /// The search.
+    pub search_ms: f64,
+}

@@ -1,0 +1,1 @@
+//! Tree layout, axes and figures.

@@ -1,0 +1,1 @@
+//! Recognises families over subsets and separates them.

@@ -1,0 +1,1 @@
+//! Branch and cut, one slice at a time.

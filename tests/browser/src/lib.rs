@@ -1,0 +1,1 @@
+//! Checks that live outside the crates: see `tests/`.

@@ -1,0 +1,1 @@
+//! The page: Yew, no mathematics.

@@ -1,0 +1,1 @@
+//! The engine as its own wasm module, without a document.

@@ -4,8 +4,8 @@ use std::fmt;
 
 use crate::model::Tuples;
 use crate::{
-    Column, ColumnId, Family, FamilyId, FamilyState, LabelId, Labels, Model, Number, Numbers, RowId,
-    Row, Sense, SubsetFamily, SubsetFamilyId, Variable, VariableId,
+    Column, ColumnId, Family, FamilyId, FamilyState, LabelId, Labels, Model, Number, Numbers, Row,
+    RowId, Sense, SubsetFamily, SubsetFamilyId, Variable, VariableId,
 };
 
 /// What a builder refuses.
@@ -20,8 +20,12 @@ pub enum ModelError {
 impl fmt::Display for ModelError {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
-            Self::UnknownColumn(column) => write!(f, "a row names column {}, which does not exist", column.0),
-            Self::TooLarge => write!(f, "the model has more than 4,294,967,294 columns, rows or entries"),
+            Self::UnknownColumn(column) => {
+                write!(f, "a row names column {}, which does not exist", column.0)
+            }
+            Self::TooLarge => {
+                write!(f, "the model has more than 4,294,967,294 columns, rows or entries")
+            }
         }
     }
 }
@@ -162,7 +166,10 @@ impl ModelBuilder {
 
     /// Adds a family over subsets to the family that was started last; its `family` field
     /// is set here.
-    pub fn subset_family(&mut self, mut subset_family: SubsetFamily) -> Result<SubsetFamilyId, ModelError> {
+    pub fn subset_family(
+        &mut self,
+        mut subset_family: SubsetFamily,
+    ) -> Result<SubsetFamilyId, ModelError> {
         let columns = self.model.columns.len();
         if let Some(term) = subset_family.terms.iter().find(|t| t.column.index() >= columns) {
             return Err(ModelError::UnknownColumn(term.column));

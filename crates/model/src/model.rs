@@ -275,7 +275,8 @@ impl Model {
     /// The column of a variable at an index tuple. `O(columns of the variable)`.
     #[must_use]
     pub fn find_column(&self, variable: &str, tuple: &[&str]) -> Option<ColumnId> {
-        let wanted: Option<Vec<LabelId>> = tuple.iter().map(|name| self.labels.find(name)).collect();
+        let wanted: Option<Vec<LabelId>> =
+            tuple.iter().map(|name| self.labels.find(name)).collect();
         let wanted = wanted?;
         let variable = self.variables.iter().find(|v| v.name == variable)?;
         variable.columns.clone().map(ColumnId).find(|&c| self.column_tuple(c) == wanted.as_slice())

@@ -47,7 +47,12 @@ impl Model {
                 statistics.rows += counted.rows;
                 statistics.nonzeros += counted.decades.values().sum::<u64>();
             }
-            debug_assert!(family.rows.clone().all(|r| self.row_family(RowId(r)) == FamilyId::from_index(index)));
+            debug_assert!(
+                family
+                    .rows
+                    .clone()
+                    .all(|r| self.row_family(RowId(r)) == FamilyId::from_index(index))
+            );
             statistics.families.push(counted);
         }
         statistics

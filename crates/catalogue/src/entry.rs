@@ -1,0 +1,112 @@
+//! The shipped formulations.
+
+use toml::Value;
+
+use crate::{families, tables, text};
+
+/// A shipped formulation.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Entry {
+    /// `family/rival`, stable for ever: links carry it.
+    pub id: String,
+    /// The first line of the notation text.
+    pub title: String,
+    /// The family's short name, e.g. `atsp`.
+    pub family: String,
+    /// The family in words: "round trip, directed".
+    pub family_title: String,
+    /// Where it was published.
+    pub citation: String,
+    /// Whether it is only a relaxation: bounded, never compared for its optimum.
+    pub relaxation: bool,
+    /// For which costs it is right: "any cost".
+    pub assumption: String,
+    /// The variable in which rivals of the family are compared.
+    pub natural: String,
+    /// Size in terms of n.
+    pub size: String,
+    /// What goes wrong with it in practice.
+    pub pitfall: String,
+    /// The journal notation.
+    pub text: &'static str,
+}
+
+/// The notation texts by id.
+const TEXTS: &[(&str, &str)] = &[
+    ("atsp/assignment", include_str!("../formulations/atsp/assignment.txt")),
+    ("atsp/labels", include_str!("../formulations/atsp/labels.txt")),
+    ("atsp/lifted-labels", include_str!("../formulations/atsp/lifted-labels.txt")),
+    ("atsp/one-commodity", include_str!("../formulations/atsp/one-commodity.txt")),
+    ("atsp/multi-commodity", include_str!("../formulations/atsp/multi-commodity.txt")),
+    ("atsp/subtours", include_str!("../formulations/atsp/subtours.txt")),
+    ("atsp/cuts", include_str!("../formulations/atsp/cuts.txt")),
+];
+
+/// All shipped formulations, by family, in the order of the family's file.
+#[must_use]
+pub fn entries() -> Vec<Entry> {
+    let mut out = Vec::new();
+    for (family, table) in families() {
+        for formulation in tables(&table, "formulation") {
+            let id = text(formulation, "id");
+            let Some(&(_, notation)) = TEXTS.iter().find(|(known, _)| *known == id) else {
+                continue;
+            };
+            out.push(Entry {
+                id: id.to_owned(),
+                title: notation.lines().next().unwrap_or_default().trim().to_owned(),
+                family: family.to_owned(),
+                family_title: text(&table, "title").to_owned(),
+                citation: text(formulation, "citation").to_owned(),
+                relaxation: formulation.get("relaxation").and_then(Value::as_bool).unwrap_or(false),
+                assumption: text(&table, "assumption").to_owned(),
+                natural: text(&table, "natural").to_owned(),
+                size: text(formulation, "size").to_owned(),
+                pitfall: text(formulation, "pitfall").to_owned(),
+                text: notation,
+            });
+        }
+    }
+    out
+}
+
+/// The shipped formulation of that id.
+#[must_use]
+pub fn find(id: &str) -> Option<Entry> {
+    entries().into_iter().find(|entry| entry.id == id)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn every_text_is_described_once_and_every_description_has_a_text() {
+        let entries = entries();
+        let ids: Vec<&str> = entries.iter().map(|e| e.id.as_str()).collect();
+        let texts: Vec<&str> = TEXTS.iter().map(|&(id, _)| id).collect();
+        assert_eq!(ids, texts);
+        let described: usize = families().map(|(_, t)| tables(&t, "formulation").count()).sum();
+        assert_eq!(described, TEXTS.len());
+        for entry in &entries {
+            assert!(!entry.title.is_empty() && !entry.citation.is_empty(), "{}", entry.id);
+            assert!(!entry.pitfall.is_empty() && !entry.size.is_empty(), "{}", entry.id);
+        }
+    }
+
+    #[test]
+    fn only_the_assignment_rows_are_a_mere_relaxation() {
+        let relaxations: Vec<String> =
+            entries().into_iter().filter(|e| e.relaxation).map(|e| e.id).collect();
+        assert_eq!(relaxations, ["atsp/assignment"]);
+    }
+
+    #[test]
+    fn an_unknown_id_is_not_found() {
+        assert!(find("atsp/no-such-rival").is_none());
+        assert_eq!(
+            find("atsp/labels").map(|e| e.family_title),
+            Some("round trip, directed".into())
+        );
+    }
+}

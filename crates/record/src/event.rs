@@ -115,8 +115,8 @@ pub enum Event {
     },
 }
 
-/// A saved log of one search.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+/// A saved log of one search. [`crate::log`] reads and writes it.
+#[derive(Debug, Clone, PartialEq)]
 pub struct Log {
     /// The version of this format: 1.
     pub version: u32,

@@ -3,15 +3,27 @@
 //!
 //! | module | holds |
 //! |---|---|
-//! | [`scenario`] | the scenario file (version 1) |
-//! | [`event`] | what a search reports as it goes, and the log (version 1) |
-//! | [`message`] | [`message::Request`] and [`message::Reply`], sent as postcard |
-//! | [`results`] | the JSON objects of `hullward run --json` |
+//! | [`scenario`] | what a scenario holds (version 1) |
+//! | [`file`] | the scenario file: TOML text to scenario and back, each complaint with its place |
+//! | [`link`] | the link: a scenario text in the fragment of an address |
+//! | [`event`] | what a search reports as it goes |
+//! | [`log`] | the saved log (version 1) and its digest |
+//! | [`message`] | [`message::Request`] and [`message::Reply`] |
+//! | [`wire`] | messages as bytes |
+//! | [`results`] | the JSON objects of `hullward run --json`, and their digest |
+//! | [`place`] | byte spans to line, column and UTF-16 units |
+//! | [`hash`] | a small stable hash |
 //!
 //! The scenario, the link and the log are versioned and open for ever; the messages are not
 //! promised. No value holds a NaN, and zeros are +0.
 
 pub mod event;
+pub mod file;
+pub mod hash;
+pub mod link;
+pub mod log;
 pub mod message;
+pub mod place;
 pub mod results;
 pub mod scenario;
+pub mod wire;

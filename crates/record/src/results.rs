@@ -1,4 +1,7 @@
 //! The JSON objects of `hullward run --json`. Field names are fixed; new ones may be added.
+//! What is also sent between workers leaves no field out, for postcard names none.
+
+mod solution;
 
 use std::collections::BTreeMap;
 
@@ -23,10 +26,13 @@ pub enum Status {
 }
 
 /// What one rival gave.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
 pub struct RivalResult {
     /// The scenario's title.
     pub scenario: String,
+    /// The instance's title, where the scenario has several.
+    #[serde(skip_serializing_if = "String::is_empty", default)]
+    pub instance: String,
     /// The rival's letter.
     pub rival: String,
     /// The rival's title.
@@ -50,6 +56,9 @@ pub struct RivalResult {
     /// Why there is no result.
     #[serde(skip_serializing_if = "Option::is_none", default)]
     pub error: Option<ErrorReport>,
+    /// What the scenario asks for and this version of the engine does not do, in words.
+    #[serde(skip_serializing_if = "Vec::is_empty", default)]
+    pub left_out: Vec<String>,
     /// Times, apart from everything that must be equal between machines.
     #[serde(skip_serializing_if = "Option::is_none", default)]
     pub timing: Option<Timing>,
@@ -85,7 +94,7 @@ pub struct RootReport {
     /// The exact bound that was proved, as a fraction: "756/5".
     pub checked_bound: Option<String>,
     /// What an independent LP code found, where one was asked.
-    #[serde(skip_serializing_if = "Option::is_none", default)]
+    #[serde(default)]
     pub second_opinion: Option<f64>,
     /// Simplex iterations.
     pub iterations: u64,
@@ -96,10 +105,10 @@ pub struct RootReport {
     /// Rows that separation added.
     pub added: u32,
     /// Rows of a Farkas ray, by name with multiplier, when infeasible.
-    #[serde(skip_serializing_if = "Vec::is_empty", default)]
+    #[serde(default)]
     pub ray: Vec<(String, f64)>,
     /// What ended it early, when the status is `limit`.
-    #[serde(skip_serializing_if = "Option::is_none", default)]
+    #[serde(default)]
     pub stopped: Option<String>,
 }
 
@@ -127,12 +136,12 @@ pub struct SearchReport {
     /// Whether every leaf and the solution were checked in exact arithmetic.
     pub checked: bool,
     /// What stopped it, when the status is `limit`.
-    #[serde(skip_serializing_if = "Option::is_none", default)]
+    #[serde(default)]
     pub stopped: Option<String>,
 }
 
-/// One value of a solution; written as `["x","Ash","Birch",1.0]`.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+/// One value of a solution; written in JSON as `["x","Ash","Birch",1.0]`.
+#[derive(Debug, Clone, PartialEq)]
 pub struct SolutionEntry {
     /// The variable.
     pub variable: String,
@@ -160,4 +169,24 @@ pub struct Timing {
     pub root_ms: f64,
     /// The search.
     pub search_ms: f64,
+}
+
+/// The digest of results: sixteen hexadecimal digits that two machines can compare. Times,
+/// titles and letters do not count; the order of the results does.
+#[must_use]
+pub fn digest(results: &[RivalResult]) -> String {
+    let mut bytes = Vec::new();
+    for result in results {
+        let compared = RivalResult {
+            scenario: String::new(),
+            instance: String::new(),
+            rival: String::new(),
+            title: String::new(),
+            timing: None,
+            ..result.clone()
+        };
+        bytes.extend(serde_json::to_vec(&compared).unwrap_or_default());
+        bytes.push(b'\n');
+    }
+    crate::hash::hex(&bytes)
 }

@@ -1,65 +1,141 @@
 //! The scenario: one TOML text that holds everything a teammate needs to see the same numbers.
+//! [`crate::file`] reads and writes it.
 
 use std::collections::BTreeMap;
 
 use serde::{Deserialize, Serialize};
 
 /// A scenario file, version 1.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+#[derive(Debug, Clone, PartialEq)]
 pub struct Scenario {
     /// The version of this format: 1.
     pub hullward: u32,
     /// A title.
-    #[serde(default)]
     pub title: String,
     /// Every random choice of the engine derives from it.
-    #[serde(default)]
     pub seed: u64,
     /// Notes in Markdown.
-    #[serde(default)]
     pub notes: String,
-    /// The instance; a scenario whose rivals are all MPS needs none.
-    #[serde(default)]
+    /// The version of the engine that gave the results, where there were any.
+    pub engine: Option<String>,
+    /// The digest of those results ([`crate::results::digest`]): another machine says "same"
+    /// or "differs".
+    pub digest: Option<String>,
+    /// The instance, or the first of several; a scenario whose rivals are all MPS needs none.
     pub instance: Option<InstanceText>,
+    /// The second and later instances; every rival runs on each.
+    pub further_instances: Vec<InstanceText>,
     /// The rivals in order: A, B, C…
-    #[serde(default, rename = "rival")]
     pub rivals: Vec<Rival>,
     /// How they are run.
-    #[serde(default)]
     pub run: Run,
+    /// The studies asked for.
+    pub studies: Vec<Study>,
+}
+
+impl Default for Scenario {
+    fn default() -> Self {
+        Self {
+            hullward: 1,
+            title: String::new(),
+            seed: 0,
+            notes: String::new(),
+            engine: None,
+            digest: None,
+            instance: None,
+            further_instances: Vec::new(),
+            rivals: Vec::new(),
+            run: Run::default(),
+            studies: Vec::new(),
+        }
+    }
+}
+
+impl Scenario {
+    /// All instances in order.
+    pub fn instances(&self) -> impl Iterator<Item = &InstanceText> {
+        self.instance.iter().chain(&self.further_instances)
+    }
+}
+
+/// The letter of the rival at `index`: A to Z, then AA, AB and so on.
+#[must_use]
+pub fn letter(index: usize) -> String {
+    let mut rest = index;
+    let mut letters = Vec::new();
+    loop {
+        letters.push(char::from(b'A' + u8::try_from(rest % 26).unwrap_or(0)));
+        if rest < 26 {
+            break;
+        }
+        rest = rest / 26 - 1;
+    }
+    letters.iter().rev().collect()
 }
 
 /// An instance exactly as pasted.
 #[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
 pub struct InstanceText {
     /// The reader's name; guessed when left out.
-    #[serde(default)]
     pub reader: Option<String>,
     /// A title of its own.
-    #[serde(default)]
     pub title: String,
     /// The text.
     pub text: String,
     /// Formulation's name → instance's name, only where names must be mapped.
-    #[serde(default)]
     pub bind: BTreeMap<String, String>,
 }
 
-/// One rival formulation.
+/// One rival formulation: `from`, `text` or `mps`, exactly one of them.
 #[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
 pub struct Rival {
     /// A title; the formulation's own when empty.
-    #[serde(default)]
     pub title: String,
     /// A catalogue id, e.g. `atsp/labels`.
-    #[serde(default)]
     pub from: Option<String>,
     /// Or journal notation.
-    #[serde(default)]
     pub text: Option<String>,
+    /// Or a model in MPS.
+    pub mps: Option<String>,
+    /// What it is meant for, where that is not a rival for the optimum.
+    pub role: Option<Role>,
     /// The state of families that differ from the formulation's default.
-    #[serde(default)]
     pub families: BTreeMap<String, FamilyState>,
+    /// What a person did by hand, replayed in order.
+    pub acts: Vec<Act>,
+}
+
+/// What a rival is meant for.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+pub enum Role {
+    /// It is bounded, not compared for its optimum.
+    Relaxation,
+}
+
+/// What a person did by hand.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Act {
+    /// Nodes solved before it.
+    pub after: u32,
+    /// What was done.
+    pub what: ActKind,
+    /// The node it was done to.
+    pub node: Option<u32>,
+    /// The column it was done on: the variable and its indices.
+    pub on: Vec<String>,
+}
+
+/// The kind of an act.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+pub enum ActKind {
+    /// Branch on a column.
+    Branch,
+    /// Close a node.
+    Close,
+    /// Add a cut.
+    Cut,
+    /// Stop the search.
+    Stop,
 }
 
 /// Where the rows of a family stand.
@@ -78,7 +154,6 @@ pub enum FamilyState {
 
 /// How the rivals are run.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
-#[serde(default)]
 pub struct Run {
     /// Whether to search; otherwise root bounds only.
     pub search: bool,
@@ -94,6 +169,8 @@ pub struct Run {
     pub branching: BranchingRule,
     /// The node selection rule.
     pub selection: Selection,
+    /// General cuts by class, and "on demand"; `None` is the default: families on demand only.
+    pub cuts: Option<Vec<String>>,
 }
 
 impl Default for Run {
@@ -106,6 +183,7 @@ impl Default for Run {
             best_known: None,
             branching: BranchingRule::default(),
             selection: Selection::default(),
+            cuts: None,
         }
     }
 }
@@ -115,11 +193,15 @@ impl Default for Run {
 pub enum BranchingRule {
     /// The column whose value is nearest to a half.
     #[default]
-    #[serde(rename = "most fractional")]
     MostFractional,
     /// By the gains seen so far (Bénichou et al. 1971).
-    #[serde(rename = "pseudocost")]
     Pseudocost,
+    /// By solving both sides of each candidate.
+    Strong,
+    /// Strong until the pseudocosts are reliable (Achterberg, Koch, Martin 2005).
+    Reliability,
+    /// Chosen by a person at each node.
+    ByHand,
 }
 
 /// Which open node comes next.
@@ -127,9 +209,46 @@ pub enum BranchingRule {
 pub enum Selection {
     /// The one with the best bound.
     #[default]
-    #[serde(rename = "best bound")]
     BestBound,
     /// The one made last.
-    #[serde(rename = "depth first")]
     DepthFirst,
+    /// The one whose best solution is estimated best.
+    BestEstimate,
+}
+
+/// A study that is asked for: its kind, and its fields as they are written.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Study {
+    /// The kind: "growth", "ladder" and so on.
+    pub kind: String,
+    /// Every other field.
+    pub fields: BTreeMap<String, Field>,
+}
+
+/// A value as it is written in the file.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Field {
+    /// A string.
+    Text(String),
+    /// A whole number.
+    Whole(i64),
+    /// Another number; finite.
+    Number(f64),
+    /// True or false.
+    Flag(bool),
+    /// A list.
+    List(Vec<Field>),
+    /// A table.
+    Table(BTreeMap<String, Field>),
+}
+
+#[cfg(test)]
+mod tests {
+    use super::letter;
+
+    #[test]
+    fn letters_go_on_after_z() {
+        let letters: Vec<String> = [0, 1, 25, 26, 27, 51, 52, 701, 702].map(letter).to_vec();
+        assert_eq!(letters, ["A", "B", "Z", "AA", "AB", "AZ", "BA", "ZZ", "AAA"]);
+    }
 }

@@ -1,0 +1,290 @@
+//! The document, table by table.
+
+use std::collections::BTreeMap;
+use std::ops::Range;
+
+use toml::Spanned;
+
+use super::Origin;
+use super::fields::{Findings, Table};
+use crate::place::Finding;
+use crate::scenario::{
+    Act, ActKind, BranchingRule, FamilyState, InstanceText, Rival, Role, Run, Scenario, Selection,
+    Study,
+};
+
+const SCENARIO: [&str; 10] =
+    ["hullward", "title", "seed", "notes", "engine", "digest", "instance", "rival", "run", "study"];
+const INSTANCE: [&str; 4] = ["reader", "title", "text", "bind"];
+const RIVAL: [&str; 7] = ["title", "from", "text", "mps", "role", "families", "act"];
+const ACT: [&str; 4] = ["after", "do", "node", "on"];
+const RUN: [&str; 8] =
+    ["search", "nodes", "iterations", "seconds", "best_known", "branching", "selection", "cuts"];
+const CUTS: [(&str, ()); 7] = [
+    ("on demand", ()),
+    ("gomory", ()),
+    ("mir", ()),
+    ("cover", ()),
+    ("flow cover", ()),
+    ("zero-half", ()),
+    ("clique", ()),
+];
+const STUDIES: [(&str, ()); 10] = [
+    ("ladder", ()),
+    ("families", ()),
+    ("equivalence", ()),
+    ("order", ()),
+    ("tightening", ()),
+    ("cuts", ()),
+    ("growth", ()),
+    ("variability", ()),
+    ("numerics", ()),
+    ("symmetry", ()),
+];
+
+/// The words for the readers of instances.
+const READERS: [(&str, ()); 7] = [
+    ("matrix", ()),
+    ("points", ()),
+    ("arcs", ()),
+    ("table", ()),
+    ("tsplib", ()),
+    ("mps", ()),
+    ("blocks", ()),
+];
+
+/// The words for where the rows of a family stand.
+pub(super) const FAMILY_STATES: [(&str, FamilyState); 3] =
+    [("in", FamilyState::In), ("on demand", FamilyState::OnDemand), ("out", FamilyState::Out)];
+
+/// The words for the kinds of an act.
+pub(super) const ACTS: [(&str, ActKind); 4] = [
+    ("branch", ActKind::Branch),
+    ("close", ActKind::Close),
+    ("cut", ActKind::Cut),
+    ("stop", ActKind::Stop),
+];
+
+/// The words for the branching rules.
+pub(super) const BRANCHING: [(&str, BranchingRule); 5] = [
+    ("most fractional", BranchingRule::MostFractional),
+    ("pseudocost", BranchingRule::Pseudocost),
+    ("strong", BranchingRule::Strong),
+    ("reliability", BranchingRule::Reliability),
+    ("by hand", BranchingRule::ByHand),
+];
+
+/// The words for the node selection rules.
+pub(super) const SELECTION: [(&str, Selection); 3] = [
+    ("best bound", Selection::BestBound),
+    ("depth first", Selection::DepthFirst),
+    ("best estimate", Selection::BestEstimate),
+];
+
+/// A document, decoded as far as it goes.
+pub(super) struct Decoded {
+    pub(super) scenario: Scenario,
+    pub(super) findings: Vec<Finding>,
+    pub(super) instance_origins: Vec<Origin>,
+    pub(super) rival_origins: Vec<Option<Origin>>,
+}
+
+/// Decodes the root table.
+pub(super) fn document(file: &str, table: &Table<'_>) -> Decoded {
+    let mut decoder = Decoder {
+        file,
+        findings: Findings::default(),
+        instance_origins: Vec::new(),
+        rival_origins: Vec::new(),
+    };
+    let scenario = decoder.scenario(table);
+    Decoded {
+        scenario,
+        findings: decoder.findings.0,
+        instance_origins: decoder.instance_origins,
+        rival_origins: decoder.rival_origins,
+    }
+}
+
+struct Decoder<'f> {
+    file: &'f str,
+    findings: Findings,
+    instance_origins: Vec<Origin>,
+    rival_origins: Vec<Option<Origin>>,
+}
+
+impl Decoder<'_> {
+    fn scenario(&mut self, table: &Table<'_>) -> Scenario {
+        if !self.version(table) {
+            return Scenario::default();
+        }
+        let found = &mut self.findings;
+        found.unknown_keys(table, "a scenario", &SCENARIO);
+        let mut scenario = Scenario {
+            title: found.text(table, "title").unwrap_or_default(),
+            seed: found.whole(table, "seed").unwrap_or_default(),
+            notes: found.text(table, "notes").unwrap_or_default(),
+            engine: found.text(table, "engine"),
+            digest: found.text(table, "digest"),
+            ..Scenario::default()
+        };
+        let mut instances = self.instances(table).into_iter();
+        scenario.instance = instances.next();
+        scenario.further_instances = instances.collect();
+        for (rival, span) in self.findings.tables(table, "rival") {
+            let rival = self.rival(rival, span);
+            scenario.rivals.push(rival);
+        }
+        if let Some(run) = self.findings.table(table, "run") {
+            scenario.run = self.run(run);
+        }
+        for (study, span) in self.findings.tables(table, "study") {
+            scenario.studies.extend(self.study(study, span));
+        }
+        scenario
+    }
+
+    /// Whether the version is one that can be read.
+    fn version(&mut self, table: &Table<'_>) -> bool {
+        let Some(value) = table.get("hullward") else {
+            let message = "the version of the format is missing".to_owned();
+            self.findings.error("version", 0..0, message, "begin with hullward = 1".to_owned());
+            return false;
+        };
+        let version = self.findings.whole::<u32>(table, "hullward");
+        if let Some(version) = version.filter(|&version| version != 1) {
+            let message = format!("the file is of version {version}; this program reads version 1");
+            let mend = "open it with the newer page or program that wrote it".to_owned();
+            self.findings.error("version", value.span(), message, mend);
+        }
+        version == Some(1)
+    }
+
+    fn instances(&mut self, table: &Table<'_>) -> Vec<InstanceText> {
+        let Some(value) = table.get("instance") else { return Vec::new() };
+        if let Some(one) = value.get_ref().as_table() {
+            return vec![self.instance(one, value.span())];
+        }
+        let tables = self.findings.tables(table, "instance");
+        tables.into_iter().map(|(one, span)| self.instance(one, span)).collect()
+    }
+
+    fn instance(&mut self, table: &Table<'_>, span: Range<usize>) -> InstanceText {
+        let found = &mut self.findings;
+        found.unknown_keys(table, "an instance", &INSTANCE);
+        found.choice(table, "reader", &READERS);
+        let text = found.text(table, "text");
+        if text.is_none() && !table.contains_key("text") {
+            let message = "the instance has no text".to_owned();
+            found.error("missing", span.clone(), message, "add text = '''…'''".to_owned());
+        }
+        let span = table.get("text").map_or(span, Spanned::span);
+        self.instance_origins.push(Origin::of_string(self.file, &span));
+        let mut bind = BTreeMap::new();
+        if let Some(names) = self.findings.table(table, "bind") {
+            for key in names.keys() {
+                let key: &str = key.get_ref();
+                bind.extend(self.findings.text(names, key).map(|name| (key.to_owned(), name)));
+            }
+        }
+        InstanceText {
+            reader: self.findings.text(table, "reader"),
+            title: self.findings.text(table, "title").unwrap_or_default(),
+            text: text.unwrap_or_default(),
+            bind,
+        }
+    }
+
+    fn rival(&mut self, table: &Table<'_>, span: Range<usize>) -> Rival {
+        let found = &mut self.findings;
+        found.unknown_keys(table, "a rival", &RIVAL);
+        let sources =
+            ["from", "text", "mps"].iter().filter(|key| table.contains_key(**key)).count();
+        if sources != 1 {
+            let message = match sources {
+                0 => "the rival has no formulation",
+                _ => "the rival has more than one formulation",
+            };
+            let mend = "give one of from = \"…\", text = '''…''', mps = '''…'''".to_owned();
+            found.error("missing", span, message.to_owned(), mend);
+        }
+        let text = ["text", "mps"].iter().find_map(|key| table.get(*key));
+        let origin = text.map(|value| Origin::of_string(self.file, &value.span()));
+        self.rival_origins.push(origin);
+        let mut rival = Rival {
+            title: found.text(table, "title").unwrap_or_default(),
+            from: found.text(table, "from"),
+            text: found.text(table, "text"),
+            mps: found.text(table, "mps"),
+            role: found.choice(table, "role", &[("relaxation", Role::Relaxation)]),
+            families: BTreeMap::new(),
+            acts: Vec::new(),
+        };
+        if let Some(families) = found.table(table, "families") {
+            for key in families.keys() {
+                let key: &str = key.get_ref();
+                let state = found.choice(families, key, &FAMILY_STATES);
+                rival.families.extend(state.map(|state| (key.to_owned(), state)));
+            }
+        }
+        for (act, span) in self.findings.tables(table, "act") {
+            rival.acts.extend(self.act(act, span));
+        }
+        rival
+    }
+
+    fn act(&mut self, table: &Table<'_>, span: Range<usize>) -> Option<Act> {
+        let found = &mut self.findings;
+        found.unknown_keys(table, "an act", &ACT);
+        if !table.contains_key("do") {
+            let message = "the act does not say what was done".to_owned();
+            let mend = "add do = \"branch\", \"close\", \"cut\" or \"stop\"".to_owned();
+            found.error("missing", span, message, mend);
+        }
+        Some(Act {
+            after: found.whole(table, "after").unwrap_or_default(),
+            what: found.choice(table, "do", &ACTS)?,
+            node: found.whole(table, "node"),
+            on: found.texts(table, "on").unwrap_or_default(),
+        })
+    }
+
+    fn run(&mut self, table: &Table<'_>) -> Run {
+        let found = &mut self.findings;
+        found.unknown_keys(table, "run", &RUN);
+        let usual = Run::default();
+        let seconds = found.number(table, "seconds").unwrap_or(usual.seconds);
+        if seconds < 0.0 {
+            let span = table.get("seconds").map(Spanned::span).unwrap_or_default();
+            let message = "`seconds` must not be negative".to_owned();
+            found.error("range", span, message, "0 is no limit".to_owned());
+        }
+        let cuts = found.texts(table, "cuts");
+        let span = table.get("cuts").map(Spanned::span).unwrap_or_default();
+        for cut in cuts.iter().flatten() {
+            found.word(cut, span.clone(), "cuts", &CUTS);
+        }
+        Run {
+            search: found.flag(table, "search").unwrap_or(usual.search),
+            nodes: found.whole(table, "nodes").unwrap_or(usual.nodes),
+            iterations: found.whole(table, "iterations").unwrap_or(usual.iterations),
+            seconds,
+            best_known: found.number(table, "best_known"),
+            branching: found.choice(table, "branching", &BRANCHING).unwrap_or_default(),
+            selection: found.choice(table, "selection", &SELECTION).unwrap_or_default(),
+            cuts,
+        }
+    }
+
+    fn study(&mut self, table: &Table<'_>, span: Range<usize>) -> Option<Study> {
+        if !table.contains_key("kind") {
+            let message = "the study has no kind".to_owned();
+            self.findings.error("missing", span, message, "add kind = \"growth\"".to_owned());
+        }
+        self.findings.choice(table, "kind", &STUDIES)?;
+        let kind = self.findings.text(table, "kind")?;
+        let mut fields = self.findings.fields(table, 0)?;
+        fields.remove("kind");
+        Some(Study { kind, fields })
+    }
+}

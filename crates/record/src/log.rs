@@ -1,0 +1,149 @@
+//! The saved log, version 1.
+//!
+//! ```text
+//! bytes 0..8    the letters "hullward"
+//! byte  8       the letter "L"
+//! byte  9       the version: 1
+//! then          the engine's version and the list of events, in postcard's encoding
+//! ```
+//!
+//! Old logs open for ever: the events of version 1 keep their numbers and fields; whoever adds
+//! to [`Event`] in a way that changes these bytes writes version 2 and still reads version 1.
+
+use std::fmt;
+
+use crate::event::{Event, Log};
+use crate::hash;
+
+const HEAD: &[u8; 10] = b"hullwardL\x01";
+
+/// The longest log, in bytes: 256 MiB.
+pub const LONGEST_LOG: usize = 256 << 20;
+
+/// Why bytes are no log.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum LogError {
+    /// They do not begin as a log does.
+    NoLog,
+    /// The version is newer than this engine.
+    Version(u8),
+    /// They end early, or hold what a log does not.
+    Malformed,
+    /// They are more than [`LONGEST_LOG`].
+    TooLong,
+}
+
+impl fmt::Display for LogError {
+    fn fmt(&self, formatter: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Self::NoLog => formatter.write_str("this is no log of a search"),
+            Self::Version(version) => {
+                write!(formatter, "the log is of version {version}; this engine reads version 1")
+            }
+            Self::Malformed => formatter.write_str("the log is damaged or cut short"),
+            Self::TooLong => formatter.write_str("the log is longer than 256 MiB"),
+        }
+    }
+}
+
+impl std::error::Error for LogError {}
+
+/// A log as bytes: the same log gives the same bytes.
+///
+/// # Errors
+/// [`LogError::TooLong`]; [`LogError::Version`] for a version other than 1.
+pub fn encode(log: &Log) -> Result<Vec<u8>, LogError> {
+    if log.version != 1 {
+        return Err(LogError::Version(u8::try_from(log.version).unwrap_or(u8::MAX)));
+    }
+    let body =
+        postcard::to_allocvec(&(&log.engine, &log.events)).map_err(|_| LogError::Malformed)?;
+    if body.len() > LONGEST_LOG {
+        return Err(LogError::TooLong);
+    }
+    Ok([HEAD.as_slice(), &body].concat())
+}
+
+/// A log from bytes.
+///
+/// # Errors
+/// Every [`LogError`].
+pub fn decode(bytes: &[u8]) -> Result<Log, LogError> {
+    if bytes.len() > LONGEST_LOG {
+        return Err(LogError::TooLong);
+    }
+    let name = HEAD.len() - 1;
+    if bytes.len() < HEAD.len() || bytes[..name] != HEAD[..name] {
+        return Err(LogError::NoLog);
+    }
+    if bytes[name] != HEAD[name] {
+        return Err(LogError::Version(bytes[name]));
+    }
+    match postcard::take_from_bytes(&bytes[HEAD.len()..]) {
+        Ok(((engine, events), [])) => Ok(Log { version: 1, engine, events }),
+        _ => Err(LogError::Malformed),
+    }
+}
+
+/// The digest of a list of events: sixteen hexadecimal digits that depend on nothing else (not
+/// on the engine's version), so that two machines, or two slice sizes, can be compared.
+#[must_use]
+pub fn digest(events: &[Event]) -> String {
+    hash::hex(&postcard::to_allocvec(events).unwrap_or_default())
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::event::{Branching, NodeNumber, NodeState, Origin, Side};
+
+    fn sample() -> Log {
+        let root = NodeNumber(1);
+        let branching = Branching { column: 3, side: Side::AtMost, bound: 0.0 };
+        let events = vec![
+            Event::Created { node: root, parent: None, branching: None },
+            Event::Solved {
+                node: root,
+                state: NodeState::Branched,
+                bound: Some(151.2),
+                fractional: 2,
+                iterations: 40,
+                rows_added: 0,
+                branch_column: Some(3),
+            },
+            Event::Created { node: NodeNumber(2), parent: Some(root), branching: Some(branching) },
+            Event::Incumbent {
+                node: root,
+                value: 214.0,
+                origin: Origin::Heuristic("2-opt".to_owned()),
+            },
+            Event::Dropped { node: NodeNumber(2), state: NodeState::Pruned },
+            Event::Bound { bound: 214.0, nodes: 1 },
+        ];
+        Log { version: 1, engine: "0.1.0".to_owned(), events }
+    }
+
+    #[test]
+    fn a_log_comes_back_and_its_digest_sees_every_bit() {
+        let log = sample();
+        let bytes = encode(&log).expect("version 1");
+        assert_eq!(decode(&bytes), Ok(log.clone()));
+        let mut other = log.clone();
+        if let Event::Bound { bound, .. } = &mut other.events[5] {
+            *bound = f64::from_bits(bound.to_bits() + 1);
+        }
+        assert_ne!(digest(&log.events), digest(&other.events));
+    }
+
+    #[test]
+    fn damaged_bytes_are_refused_with_a_reason() {
+        let bytes = encode(&sample()).expect("version 1");
+        assert_eq!(decode(b"hullward"), Err(LogError::NoLog));
+        assert_eq!(decode(&bytes[..bytes.len() - 1]), Err(LogError::Malformed));
+        assert_eq!(decode(&[bytes.as_slice(), &[0]].concat()), Err(LogError::Malformed));
+        let mut newer = bytes;
+        newer[9] = 2;
+        assert_eq!(decode(&newer), Err(LogError::Version(2)));
+        assert_eq!(encode(&Log { version: 2, ..sample() }), Err(LogError::Version(2)));
+    }
+}

@@ -1,0 +1,91 @@
+use super::*;
+use crate::event::{Event, NodeNumber};
+use crate::message::{LaneJob, Reply, RunNumber};
+use crate::results::{ErrorReport, RootReport, SearchReport, SolutionEntry, Status};
+use crate::scenario::{InstanceText, Rival, Run};
+
+fn root() -> RootReport {
+    RootReport {
+        status: Status::Optimal,
+        bound: Some(151.2),
+        checked: true,
+        checked_bound: Some("756/5".to_owned()),
+        second_opinion: None,
+        iterations: 120,
+        fractional: 22,
+        rounds: 0,
+        added: 0,
+        ray: Vec::new(),
+        stopped: None,
+    }
+}
+
+fn search() -> SearchReport {
+    SearchReport {
+        status: Status::Limit,
+        bound: Some(200.0),
+        incumbent: Some(214.0),
+        gap: Some(14.0 / 214.0),
+        nodes: 3,
+        open: 2,
+        iterations: 90,
+        work: 1_000,
+        solution: vec![SolutionEntry {
+            variable: "x".to_owned(),
+            indices: vec!["Ash".to_owned()],
+            value: 1.0,
+        }],
+        checked: false,
+        stopped: Some("the node limit".to_owned()),
+    }
+}
+
+#[test]
+fn requests_come_back() {
+    let job = LaneJob {
+        run: RunNumber(7),
+        instance: Some(InstanceText { text: "0 1\n1 0\n".to_owned(), ..InstanceText::default() }),
+        rival: Rival { from: Some("atsp/labels".to_owned()), ..Rival::default() },
+        settings: Run { best_known: Some(39.0), ..Run::default() },
+        seed: 7,
+    };
+    for request in [
+        Request::Warm,
+        Request::List,
+        Request::Load(Box::new(job)),
+        Request::Run { nodes: Some(1) },
+        Request::Inspect(NodeNumber(9)),
+    ] {
+        let bytes = write_request(&request).expect("short");
+        assert_eq!(read_request(&bytes), Ok(request));
+    }
+}
+
+#[test]
+fn replies_come_back_with_their_empty_fields() {
+    let failed = ErrorReport {
+        message: "m".to_owned(),
+        complaints: Vec::new(),
+        place: "instance".to_owned(),
+    };
+    for reply in [
+        Reply::Root(Box::new(root())),
+        Reply::Done(Box::new(search())),
+        Reply::Batch(vec![Event::Bound { bound: 1.0, nodes: 2 }]),
+        Reply::Failed(failed),
+    ] {
+        let envelope = Envelope { run: RunNumber(1), sequence: 5, reply };
+        let bytes = write_envelope(&envelope).expect("short");
+        assert_eq!(read_envelope(&bytes), Ok(envelope));
+    }
+}
+
+#[test]
+fn other_bytes_are_refused() {
+    assert_eq!(read_request(&[]), Err(WireError::Malformed));
+    assert_eq!(read_request(&[200]), Err(WireError::Malformed));
+    let mut bytes = write_request(&Request::Warm).expect("short");
+    bytes.push(0);
+    assert_eq!(read_request(&bytes), Err(WireError::Malformed));
+    assert_eq!(read_request(&vec![0; LONGEST_MESSAGE + 1]), Err(WireError::TooLong));
+}

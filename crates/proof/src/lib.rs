@@ -1,1 +1,36 @@
 //! Exact check of bounds, rays and points.
+//!
+//! A floating-point kernel says what it believes; this crate says what follows from it.
+//! For min c'x over L ≤ Ax ≤ U, l ≤ x ≤ u **any** multipliers y give, with d = c − A'y,
+//!
+//! ```text
+//! c'x  ≥  Σ_i (y_i > 0 ? y_i L_i : y_i U_i)  +  Σ_j (d_j > 0 ? d_j l_j : d_j u_j)
+//! ```
+//!
+//! so the multipliers may be rounded at will, as long as the sum itself is exact. They are
+//! rounded twice, to a dyadic grid and to simple fractions, and the better sum is kept.
+//! All sums are over integers: rows and costs are scaled once, when [`ExactRows`] is built.
+//!
+//! | item | use it for |
+//! |---|---|
+//! | [`ExactRows`] | the rows of a relaxation, kept over many nodes |
+//! | [`bound`] | a proved bound from the multipliers of a relaxation |
+//! | [`infeasible`] | whether a ray proves that a relaxation has no point |
+//! | [`Point`], [`violations`] | a point against every written row and bound |
+//!
+//! Sources: Neumaier, Shcherbina 2004 (safe bounds); Cook, Koch, Steffy, Wolter 2013 (mending
+//! multipliers exactly); Farkas 1902.
+
+mod bound;
+mod implied;
+mod kernel;
+mod mend;
+mod multipliers;
+mod point;
+mod rows;
+#[cfg(test)]
+mod tests;
+
+pub use bound::{bound, infeasible};
+pub use point::{Place, Point, Violation, violations};
+pub use rows::{Bounds, ExactRows};

@@ -1,0 +1,3 @@
+//! Tests through the public face.
+
+mod by_hand;

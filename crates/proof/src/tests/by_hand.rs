@@ -1,0 +1,186 @@
+//! Small programs whose optima are worked out by hand.
+
+use crate::{Bounds, ExactRows, Place, Point, bound, infeasible, violations};
+use model::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
+
+fn ratio(top: i64, bottom: u64) -> Number {
+    Number::from_parts(top.into(), bottom.into())
+}
+
+fn column(lower: Option<i64>, upper: Option<i64>, cost: Number, integer: bool) -> ColumnSpec {
+    ColumnSpec { lower: lower.map(Number::from), upper: upper.map(Number::from), cost, integer }
+}
+
+fn row(entries: &[(u32, Number)], lower: Option<Number>, upper: Option<Number>) -> Row {
+    let entries = entries.iter().map(|(column, a)| (ColumnId(*column), a.clone())).collect();
+    Row { entries, lower, upper }
+}
+
+fn bounds(model: &Model) -> Vec<Bounds> {
+    let exact = |id| model.numbers().exact(id).clone();
+    model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact))).collect()
+}
+
+/// min x + y, 3x + y ≥ 2, x + 3y ≥ 2, x, y ≥ 0: optimum 1 at (½, ½), duals (¼, ¼).
+fn two_rows(sense: Sense) -> Model {
+    let sign = if sense == Sense::Minimise { 1 } else { -1 };
+    let mut b = ModelBuilder::new("two rows", sense);
+    b.offset(Number::from(10));
+    for _ in 0..2 {
+        b.column(&[], &column(Some(0), None, Number::from(sign), false)).unwrap();
+    }
+    b.family("cover", FamilyState::In, false);
+    let (one, three) = (Number::from(1), Number::from(3));
+    let two = Some(Number::from(2));
+    b.row(&[], row(&[(0, three.clone()), (1, one.clone())], two.clone(), None)).unwrap();
+    b.row(&[], row(&[(0, one), (1, three)], two, None)).unwrap();
+    b.build()
+}
+
+#[test]
+fn true_duals_give_the_optimum_exactly() {
+    let model = two_rows(Sense::Minimise);
+    let rows = ExactRows::new(&model);
+    assert_eq!(bound(&rows, &bounds(&model), &[0.25, 0.25]), Some(Number::from(11)));
+    let noisy = [0.25 + 3e-12, 0.25 - 1e-12];
+    assert_eq!(bound(&rows, &bounds(&model), &noisy), Some(Number::from(11)));
+}
+
+#[test]
+fn maximising_turns_the_bound_round() {
+    let model = two_rows(Sense::Maximise);
+    let rows = ExactRows::new(&model);
+    assert_eq!(bound(&rows, &bounds(&model), &[0.25, 0.25]), Some(Number::from(9)));
+    let weak = bound(&rows, &bounds(&model), &[0.125, 0.125]).unwrap();
+    assert!(weak > Number::from(9));
+}
+
+#[test]
+fn wrong_duals_give_weaker_bounds() {
+    let model = two_rows(Sense::Minimise);
+    let rows = ExactRows::new(&model);
+    for y in [[0.1, 0.1], [0.0, 0.0], [-5.0, 0.2], [1e6, 1e6], [0.3, 0.3]] {
+        if let Some(value) = bound(&rows, &bounds(&model), &y) {
+            assert!(value <= Number::from(11), "{y:?} gave {value}");
+        }
+    }
+    assert_eq!(bound(&rows, &bounds(&model), &[f64::NAN, 0.0]), None);
+    assert_eq!(bound(&rows, &[], &[0.25, 0.25]), None);
+}
+
+/// Duals that are no dyadic numbers come out as the fractions they are: min x with 7x ≥ 756/5.
+#[test]
+fn simple_fractions_are_found() {
+    let mut b = ModelBuilder::new("sevenths", Sense::Minimise);
+    b.column(&[], &column(Some(0), None, Number::from(7), false)).unwrap();
+    b.row(&[], row(&[(0, Number::from(7))], Some(ratio(756, 5)), None)).unwrap();
+    b.row(&[], row(&[(0, Number::from(3))], Some(Number::from(1)), None)).unwrap();
+    let model = b.build();
+    let rows = ExactRows::new(&model);
+    assert_eq!(bound(&rows, &bounds(&model), &[1.0, 0.0]), Some(ratio(756, 5)));
+    assert_eq!(bound(&rows, &bounds(&model), &[0.0, 7.0 / 3.0]), Some(ratio(7, 3)));
+}
+
+/// The rows 0.3x ≥ 1 and coefficients with many decimals are scaled, not rounded.
+#[test]
+fn decimals_are_exact() {
+    let mut b = ModelBuilder::new("decimals", Sense::Minimise);
+    b.column(&[], &column(Some(0), Some(100), ratio(1, 10), false)).unwrap();
+    b.row(&[], row(&[(0, ratio(3, 10))], Some(Number::from(1)), None)).unwrap();
+    let model = b.build();
+    let rows = ExactRows::new(&model);
+    assert_eq!(bound(&rows, &bounds(&model), &[0.1 / 0.3]), Some(ratio(1, 3)));
+}
+
+/// A free column needs its reduced cost to be 0 exactly: min x + y, x free, x + 3y ≥ 1,
+/// 0 ≤ y ≤ 1, 3x − y ≥ −4. Both rows are tight at
+/// (−11/10, 7/10), value −2/5, duals (2/5, 1/5).
+#[test]
+fn free_columns_are_mended() {
+    let mut b = ModelBuilder::new("free", Sense::Minimise);
+    b.column(&[], &column(None, None, Number::from(1), false)).unwrap();
+    b.column(&[], &column(Some(0), Some(1), Number::from(1), false)).unwrap();
+    let (one, three) = (Number::from(1), Number::from(3));
+    b.row(&[], row(&[(0, one.clone()), (1, three.clone())], Some(one.clone()), None)).unwrap();
+    b.row(&[], row(&[(0, three), (1, -one)], Some(Number::from(-4)), None)).unwrap();
+    let model = b.build();
+    let rows = ExactRows::new(&model);
+    let exact = bound(&rows, &bounds(&model), &[0.4, 0.2]).unwrap();
+    assert_eq!(exact, ratio(-2, 5));
+    let off = bound(&rows, &bounds(&model), &[0.4 + 1e-7, 0.2 - 1e-7]).unwrap();
+    assert!(off <= exact && off > &exact - ratio(1, 1_000_000), "{off}");
+}
+
+/// x + y ≥ 3 and x + y ≤ `most`, with 0 ≤ x, y and, if given, a common upper bound.
+fn pressed(most: i64, upper: Option<i64>) -> Model {
+    let mut b = ModelBuilder::new("pressed", Sense::Minimise);
+    b.column(&[], &column(Some(0), upper, Number::from(1), true)).unwrap();
+    b.column(&[], &column(Some(0), upper, Number::from(1), true)).unwrap();
+    let both = [(0, Number::from(1)), (1, Number::from(1))];
+    b.row(&[], row(&both, Some(Number::from(3)), None)).unwrap();
+    b.row(&[], row(&both, None, Some(Number::from(most)))).unwrap();
+    b.build()
+}
+
+#[test]
+fn rays_prove_or_do_not() {
+    let model = pressed(2, Some(9));
+    let (rows, all) = (ExactRows::new(&model), bounds(&model));
+    assert!(infeasible(&rows, &all, &[1.0, -1.0]));
+    assert!(infeasible(&rows, &all, &[-1.0, 1.0]));
+    assert!(infeasible(&rows, &all, &[1e-9, -1e-9]));
+    for tampered in [[1.0, -0.25], [1.0, 1.0], [0.0, 0.0], [-1.0, -1.0]] {
+        assert!(!infeasible(&rows, &all, &tampered), "{tampered:?}");
+    }
+}
+
+#[test]
+fn no_ray_proves_a_falsehood() {
+    for upper in [None, Some(9)] {
+        let model = pressed(3, upper);
+        let (rows, all) = (ExactRows::new(&model), bounds(&model));
+        for ray in [[1.0, -1.0], [-1.0, 1.0], [1.0, -0.999_999], [1e12, -1.0], [3.0, -1.0]] {
+            assert!(!infeasible(&rows, &all, &ray), "{ray:?}");
+        }
+    }
+}
+
+#[test]
+fn bounds_are_overridden() {
+    let model = two_rows(Sense::Minimise);
+    let mut rows = ExactRows::new(&model);
+    let zero = Some(Number::ZERO);
+    let fixed = vec![(zero.clone(), zero.clone()), (zero.clone(), zero)];
+    assert!(infeasible(&rows, &fixed, &[1.0, 0.0]));
+    let tight = vec![(Some(Number::from(1)), None), (Some(Number::from(0)), None)];
+    assert_eq!(bound(&rows, &tight, &[0.0, 1.0 / 3.0]), Some(ratio(34, 3)));
+    let both = [(0, Number::from(1)), (1, Number::from(1))];
+    assert_eq!(rows.add(&row(&both, Some(Number::from(4)), None)), 2);
+    assert_eq!(bound(&rows, &tight, &[0.0, 0.0, 1.0]), Some(Number::from(14)));
+}
+
+#[test]
+fn points_are_checked_exactly() {
+    let mut b = ModelBuilder::new("points", Sense::Maximise);
+    b.variable("x", false);
+    let label = b.label("Ash");
+    b.column(&[label], &column(Some(0), Some(3), Number::from(2), true)).unwrap();
+    b.variable("y", false);
+    b.column(&[], &column(Some(0), None, ratio(1, 3), false)).unwrap();
+    b.family("limit", FamilyState::In, false);
+    let entries = [(0, Number::from(1)), (1, Number::from(3))];
+    b.row(&[label], row(&entries, None, Some(Number::from(3)))).unwrap();
+    b.family("later", FamilyState::OnDemand, false);
+    b.row(&[], row(&[(0, Number::from(1))], None, Some(Number::from(1)))).unwrap();
+    b.family("gone", FamilyState::Out, false);
+    b.row(&[], row(&[(0, Number::from(1))], None, Some(Number::from(0)))).unwrap();
+    let model = b.build();
+    let good = Point::new(&model, &[0.999_999_9, 2.0 / 3.0]);
+    assert_eq!((good.violations.len(), good.objective), (0, ratio(20, 9)));
+    let bad = violations(&model, &[4.0, 0.0]);
+    let names: Vec<(&str, Number)> =
+        bad.iter().map(|v| (v.name.as_str(), v.amount.clone())).collect();
+    let expected = [("limit[Ash]", 1), ("later", 3), ("x[Ash]", 1)];
+    assert_eq!(names, expected.map(|(name, amount)| (name, Number::from(amount))));
+    assert_eq!(violations(&model, &[f64::NAN, 0.0])[0].place, Place::Value(ColumnId(0)));
+}

@@ -1,0 +1,162 @@
+//! From the sources of the page to one file.
+//!
+//! The two wasm modules are compiled, get their JavaScript glue, and are packed with the boot
+//! script and the style into one HTML file that fetches nothing. Its size is held to a budget.
+
+use std::fs;
+use std::io::Write;
+use std::path::Path;
+
+use base64::Engine as _;
+use base64::engine::general_purpose::STANDARD;
+use flate2::Compression;
+use flate2::write::GzEncoder;
+use wasm_bindgen_cli_support::Bindgen;
+
+use crate::compiler::{Compiler, TARGET};
+use crate::fault::{Attempt, Fault};
+use crate::html::{self, Parts};
+use crate::process::{run, step};
+use crate::workplace::Workplace;
+
+/// What the whole page may weigh as a server would send it, in bytes of gzip.
+const BUDGET: usize = 600 * 1024;
+
+const PAGE: &str = "hullward-web";
+const ENGINE: &str = "hullward-worker";
+
+/// Builds the page into `web/dist`.
+pub(crate) fn build(place: &Workplace) -> Result<(), Fault> {
+    let compiler = step("find a compiler for wasm", Compiler::find)?;
+    step("compile the page and the engine", || run(&mut compiler.build(place, &[PAGE, ENGINE])))?;
+    step("bundle the page", || bundle(place))
+}
+
+/// A module with its glue.
+struct Module {
+    wasm: Vec<u8>,
+    glue: String,
+}
+
+fn bundle(place: &Workplace) -> Result<(), Fault> {
+    let page = bind(place, PAGE)?;
+    let engine = bind(place, ENGINE)?;
+    let host = read(&place.web().join("worker/host.js"))?;
+    let boot = read(&place.web().join("boot.js"))?;
+    let style = read(&place.web().join("style.css"))?;
+    let template = read(&place.web().join("index.html"))?;
+    let worker_script = format!("{}\n{host}", engine.glue);
+    let packed_page = gzip(&page.wasm)?;
+    let packed_engine = gzip(&engine.wasm)?;
+    let packed_script = gzip(worker_script.as_bytes())?;
+    let file = html::assemble(
+        &template,
+        &Parts {
+            style: &style,
+            page_module: &STANDARD.encode(&packed_page),
+            engine_module: &STANDARD.encode(&packed_engine),
+            worker_script: &STANDARD.encode(&packed_script),
+            page_glue: &page.glue,
+            boot: &boot,
+        },
+    )?;
+    write(place, &file)?;
+    weigh("page module", page.wasm.len(), packed_page.len());
+    weigh("engine module", engine.wasm.len(), packed_engine.len());
+    weigh("style", style.len(), gzip(style.as_bytes())?.len());
+    let whole = gzip(file.as_bytes())?.len();
+    weigh("the one file", file.len(), whole);
+    within_budget(whole)
+}
+
+/// Gives a compiled module its glue, and takes names and other ballast out of it.
+fn bind(place: &Workplace, package: &str) -> Result<Module, Fault> {
+    let file = format!("{}.wasm", package.replace('-', "_"));
+    let path = place.wasm_target().join(TARGET).join("page").join(file);
+    let mut bindgen = Bindgen::new();
+    bindgen.input_path(&path).typescript(false).omit_default_module_path(true);
+    bindgen.remove_name_section(true).remove_producers_section(true);
+    bindgen.no_modules(true).attempting("choose plain scripts for the glue")?;
+    let mut output =
+        bindgen.generate_output().attempting(format!("make the glue of {}", path.display()))?;
+    let with_files = output.snippets().iter().filter(|(_, files)| !files.is_empty());
+    if let Some(name) = with_files.map(|(name, _)| name).chain(output.local_modules().keys()).next()
+    {
+        return Err(Fault::new(format!(
+            "{package} brings a JavaScript file of its own, {name:?}, which one file cannot hold; \
+             find the dependency that does so and take it out"
+        )));
+    }
+    let glue = output.js().to_owned();
+    Ok(Module { wasm: output.wasm_mut().emit_wasm(), glue })
+}
+
+fn write(place: &Workplace, file: &str) -> Result<(), Fault> {
+    let dist = place.dist();
+    fs::create_dir_all(&dist).attempting(format!("make {}", dist.display()))?;
+    for name in ["index.html", "hullward.html"] {
+        let path = dist.join(name);
+        fs::write(&path, file).attempting(format!("write {}", path.display()))?;
+        println!("   {}", path.display());
+    }
+    Ok(())
+}
+
+fn read(path: &Path) -> Result<String, Fault> {
+    fs::read_to_string(path).attempting(format!("read {}", path.display()))
+}
+
+fn gzip(bytes: &[u8]) -> Result<Vec<u8>, Fault> {
+    let mut encoder = GzEncoder::new(Vec::new(), Compression::best());
+    encoder.write_all(bytes).attempting("compress")?;
+    encoder.finish().attempting("compress")
+}
+
+fn weigh(what: &str, bytes: usize, packed: usize) {
+    println!("   {what}: {} KB, {} KB compressed", kilobytes(bytes), kilobytes(packed));
+}
+
+fn kilobytes(bytes: usize) -> usize {
+    bytes.div_ceil(1024)
+}
+
+fn within_budget(packed: usize) -> Result<(), Fault> {
+    let (size, budget) = (kilobytes(packed), kilobytes(BUDGET));
+    if packed > BUDGET {
+        return Err(Fault::new(format!(
+            "the page weighs {size} KB compressed, over its budget of {budget} KB"
+        )));
+    }
+    println!("   {size} KB of a budget of {budget} KB");
+    Ok(())
+}
+
+#[cfg(test)]
+mod tests {
+    use std::io::Read;
+
+    use flate2::read::GzDecoder;
+
+    use super::*;
+
+    #[test]
+    fn gzip_is_undone_by_gunzip_and_always_the_same() {
+        let bytes = b"the same bytes come out for the same bytes in".repeat(50);
+        let packed = gzip(&bytes).expect("memory takes every byte");
+        assert!(packed.len() < bytes.len() / 5);
+        assert_eq!(gzip(&bytes).expect("memory takes every byte"), packed);
+        let mut unpacked = Vec::new();
+        GzDecoder::new(&packed[..]).read_to_end(&mut unpacked).expect("it was just packed");
+        assert_eq!(unpacked, bytes);
+    }
+
+    #[test]
+    fn over_the_budget_is_a_fault_that_says_both_figures() {
+        assert!(within_budget(BUDGET).is_ok());
+        let Err(fault) = within_budget(BUDGET + 1) else { panic!("let through") };
+        assert_eq!(
+            fault.to_string(),
+            "the page weighs 601 KB compressed, over its budget of 600 KB"
+        );
+    }
+}

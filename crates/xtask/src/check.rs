@@ -1,0 +1,90 @@
+//! What CI runs, quick things first.
+
+use std::process::Command;
+
+use crate::fault::Fault;
+use crate::options::Part;
+use crate::process::{run, step};
+use crate::workplace::{DATA, Workplace};
+use crate::{bundle, packages, parity};
+
+const REFERENCE: &str = "hullward-tests-reference";
+const BROWSER: &str = "hullward-tests-browser";
+
+/// Runs the parts.
+pub(crate) fn run_parts(place: &Workplace, parts: &[Part]) -> Result<(), Fault> {
+    match place.data() {
+        Some(data) if data.is_dir() => println!("   published instances: {}\n", data.display()),
+        Some(data) => {
+            return Err(Fault::new(format!(
+                "{DATA} names {}, which is no folder: correct it or unset it",
+                data.display()
+            )));
+        }
+        None => println!("   {DATA} is not set: checks on published instances are left out\n"),
+    }
+    for part in parts {
+        match part {
+            Part::Native => native(place)?,
+            Part::Page => page(place)?,
+            Part::Browser => browser(place)?,
+            Part::Reference => reference(place)?,
+        }
+    }
+    Ok(())
+}
+
+fn native(place: &Workplace) -> Result<(), Fault> {
+    step("format", || run(cargo(place).args(["fmt", "--all", "--check"])))?;
+    step("lint", || run(all_but(place, "clippy", &[REFERENCE]).args(LINT)))?;
+    step("documentation", || {
+        let mut doc = all_but(place, "doc", &[REFERENCE, BROWSER]);
+        run(doc.args(["--no-deps", "--document-private-items"]).env("RUSTDOCFLAGS", "-D warnings"))
+    })?;
+    step("native tests", || run(&mut all_but(place, "test", &[REFERENCE, BROWSER])))
+}
+
+fn page(place: &Workplace) -> Result<(), Fault> {
+    bundle::build(place)?;
+    step("the shipped engine against the native one", || parity::check(place))
+}
+
+fn browser(place: &Workplace) -> Result<(), Fault> {
+    step("browser tests", || {
+        packages::ensure(&["chromium", "chromium-driver"], "for the browser tests")?;
+        if !place.dist().join("index.html").is_file() {
+            return Err(Fault::new("the page is not built: run `cargo xtask page --no-serve`"));
+        }
+        run(cargo(place).args(["test", "--package", BROWSER]))
+    })
+}
+
+fn reference(place: &Workplace) -> Result<(), Fault> {
+    step("reference checks", || {
+        packages::ensure(&["cmake", "libclang-dev"], "to build HiGHS for the reference checks")?;
+        run(cargo(place).args(["clippy", "--package", REFERENCE]).args(LINT))?;
+        run(cargo(place).args(["test", "--package", REFERENCE]))
+    })
+}
+
+const LINT: [&str; 4] = ["--all-targets", "--", "-D", "warnings"];
+
+/// cargo in the repository, with the data's folder as an absolute path.
+pub(crate) fn cargo(place: &Workplace) -> Command {
+    let mut cargo = Command::new(std::env::var_os("CARGO").unwrap_or("cargo".into()));
+    cargo.current_dir(place.root());
+    if let Some(data) = place.data() {
+        cargo.env(DATA, data);
+    }
+    cargo
+}
+
+/// A cargo task on the whole workspace but some packages.
+fn all_but(place: &Workplace, task: &str, left_out: &[&str]) -> Command {
+    let mut cargo = cargo(place);
+    cargo.args([task, "--workspace"]);
+    for package in left_out {
+        cargo.args(["--exclude", package]);
+    }
+    cargo
+}

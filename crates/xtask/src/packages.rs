@@ -1,0 +1,69 @@
+//! Debian packages that a step needs.
+
+use std::process::Command;
+
+use crate::fault::Fault;
+use crate::process::{output, run};
+
+/// Sees to it that packages are installed: installs what lacks when it may, else says the line to
+/// type. `purpose` as in "to build the page".
+pub(crate) fn ensure(packages: &[&str], purpose: &str) -> Result<(), Fault> {
+    let lacking: Vec<&str> = packages.iter().copied().filter(|name| !installed(name)).collect();
+    if lacking.is_empty() {
+        return Ok(());
+    }
+    let line = install_line(&lacking);
+    if !crate::process::on_path("apt-get") || !is_root() {
+        return Err(Fault::new(format!(
+            "{} {} needed {purpose}; install by\n\n    sudo sh -c '{line}'\n",
+            lacking.join(", "),
+            if lacking.len() == 1 { "is" } else { "are" },
+        )));
+    }
+    println!("   installing {} {purpose}", lacking.join(", "));
+    let mut shell = Command::new("sh");
+    shell.args(["-c", &line]).env("DEBIAN_FRONTEND", "noninteractive");
+    run(&mut shell)
+}
+
+/// The line that installs packages.
+fn install_line(packages: &[&str]) -> String {
+    format!(
+        "apt-get update -q && apt-get install -q -y --no-install-recommends {}",
+        packages.join(" ")
+    )
+}
+
+/// Whether dpkg knows the package as installed.
+pub(crate) fn installed(package: &str) -> bool {
+    let mut query = Command::new("dpkg-query");
+    query.args(["--show", "--showformat=${db:Status-Status}", package]);
+    output(&mut query).is_ok_and(|status| status == "installed")
+}
+
+/// The files that a package has installed.
+pub(crate) fn files(package: &str) -> Result<Vec<String>, Fault> {
+    let listed = output(Command::new("dpkg").args(["--listfiles", package]))?;
+    Ok(listed.lines().map(String::from).collect())
+}
+
+fn is_root() -> bool {
+    output(Command::new("id").arg("-u")).is_ok_and(|id| id.trim() == "0")
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_line_to_type_names_every_package() {
+        let line = install_line(&["cmake", "libclang-dev"]);
+        assert!(line.contains("apt-get install"));
+        assert!(line.ends_with("cmake libclang-dev"));
+    }
+
+    #[test]
+    fn a_package_that_does_not_exist_is_not_installed() {
+        assert!(!installed("no-such-package-anywhere"));
+    }
+}

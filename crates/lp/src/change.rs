@@ -1,0 +1,145 @@
+//! Changes to problem and basis between solves: rows come and go, a basis is loaded.
+
+use crate::basis::{Basis, Repair, Status};
+use crate::problem::CleanRow;
+use crate::state::{Core, settled};
+
+impl Core {
+    /// Appends rows; their logicals are basic.
+    pub(crate) fn append_rows(&mut self, rows: &[CleanRow]) {
+        self.matrix.append(rows.iter().map(|row| row.entries.as_slice()));
+        for row in rows {
+            self.cost.push(0.0);
+            self.lower.push(row.lower);
+            self.upper.push(row.upper);
+            self.status.push(Status::Basic);
+        }
+        self.restore_given();
+        self.sort_head();
+    }
+
+    /// Keeps the rows marked true; the logicals of the others are basic.
+    pub(crate) fn retain_rows(&mut self, keep: &[bool]) {
+        let n = self.columns();
+        let kept = |j: usize| j < n || keep[j - n];
+        let mut place = vec![0u32; self.variables()];
+        let mut next = 0;
+        for (j, place) in place.iter_mut().enumerate() {
+            *place = next;
+            next += u32::from(kept(j));
+        }
+        let held = self.head.iter().zip(&self.weight).filter(|(j, _)| kept(**j as usize));
+        let (head, weight): (Vec<u32>, Vec<f64>) =
+            held.map(|(&j, &weight)| (place[j as usize], weight)).unzip();
+        self.head = head;
+        self.weight = weight;
+        for list in [&mut self.cost, &mut self.lower, &mut self.upper] {
+            let mut j = 0;
+            list.retain(|_| {
+                j += 1;
+                kept(j - 1)
+            });
+        }
+        let mut j = 0;
+        self.status.retain(|_| {
+            j += 1;
+            kept(j - 1)
+        });
+        self.matrix.retain(keep);
+        self.restore_given();
+        self.sort_head();
+    }
+
+    /// Makes a basis current: unknown rows basic, as many basic variables as rows, dependent ones replaced.
+    pub(crate) fn load(&mut self, basis: &Basis) -> Repair {
+        let (n, m) = (self.columns(), self.rows());
+        let (known_columns, known_rows) =
+            (basis.column_count() as usize, basis.row_count() as usize);
+        for j in 0..n + m {
+            self.status[j] = if j < n && j < known_columns {
+                basis.status(j)
+            } else if j < n {
+                Status::Lower
+            } else if j - n < known_rows {
+                basis.status(known_columns + j - n)
+            } else {
+                Status::Basic
+            };
+        }
+        self.restore_given();
+        self.settle_statuses();
+        let mut repair =
+            Repair { new_rows: m.saturating_sub(known_rows) as u32, dropped: 0, inserted: 0 };
+        self.balance(&mut repair);
+        self.head.clear();
+        self.sort_head();
+        let replaced = self.refactor_canonical();
+        repair.dropped += replaced;
+        repair.inserted += replaced;
+        repair
+    }
+
+    /// Makes as many variables basic as there are rows: too many leave from the last column, missing ones are logicals.
+    fn balance(&mut self, repair: &mut Repair) {
+        let (n, m) = (self.columns(), self.rows());
+        let mut count = self.status.iter().filter(|status| **status == Status::Basic).count();
+        for j in (0..n).rev().chain((n..n + m).rev()) {
+            if count > m && self.status[j] == Status::Basic {
+                self.status[j] = settled(Status::Lower, self.work_lower[j], self.work_upper[j]);
+                count -= 1;
+                repair.dropped += 1;
+            }
+        }
+        for j in n..n + m {
+            if count < m && self.status[j] != Status::Basic {
+                self.status[j] = Status::Basic;
+                count += 1;
+                repair.inserted += 1;
+            }
+        }
+    }
+
+    /// True when no value is within a variable's given bounds.
+    pub(crate) fn has_empty_range(&self, j: usize) -> bool {
+        self.lower[j] > self.upper[j]
+            || self.lower[j] == f64::INFINITY
+            || self.upper[j] == f64::NEG_INFINITY
+    }
+
+    /// Moves boxed variables to the bound their reduced cost asks for; true when any moved.
+    pub(crate) fn flip_to_right_side(&mut self, tolerance: f64) -> bool {
+        let mut moved = false;
+        for j in 0..self.variables() {
+            if self.wrong_sign(j) > tolerance {
+                let to = match self.status[j] {
+                    Status::Lower if self.work_upper[j] < f64::INFINITY => Status::Upper,
+                    Status::Upper if self.work_lower[j] > f64::NEG_INFINITY => Status::Lower,
+                    _ => continue,
+                };
+                self.status[j] = to;
+                moved = true;
+            }
+        }
+        moved
+    }
+
+    /// c'x with working costs and the current values.
+    pub(crate) fn working_objective(&mut self) -> f64 {
+        let nonbasic: f64 =
+            (0..self.variables()).map(|j| self.work_cost[j] * self.nonbasic_value(j)).sum();
+        let basic: f64 = self
+            .head
+            .iter()
+            .zip(&self.basic)
+            .map(|(&j, &value)| self.work_cost[j as usize] * value)
+            .sum();
+        self.ticks += self.variables() as u64 / 4;
+        nonbasic + basic
+    }
+
+    /// y = B⁻ᵀc_B with the given costs, one a row.
+    pub(crate) fn given_duals(&mut self) -> Vec<f64> {
+        self.compute_duals(true);
+        (0..self.rows() as u32).map(|row| self.scratch.rho.get(row)).collect()
+    }
+}

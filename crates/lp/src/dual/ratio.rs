@@ -1,0 +1,120 @@
+//! The bound-flipping ratio test.
+//!
+//! The leaving variable violates a bound by δ; along the dual step t every reduced cost falls as d_j − t α_j, and
+//! the dual objective rises with slope δ. Passing the breakpoint d_j / α_j of a boxed variable costs |α_j|(u_j − l_j)
+//! of slope; breakpoints are passed while the slope stays positive, and the variables passed flip to their
+//! other bound. Breakpoints are taken in groups that Harris's tolerance makes equal; in the last
+//! profitable group with a good pivot, the largest |α_j| enters.
+//!
+//! Source: Fourer 1994; Maros 2003; Harris 1973.
+
+use crate::basis::Status;
+use crate::state::Core;
+use crate::tolerances::{HARRIS_DUAL, PRIMAL, RATIO_ENTRY};
+use std::ops::Range;
+
+/// What the test says.
+#[derive(Debug)]
+pub(crate) enum Choice {
+    /// Nothing stops the dual step: the row proves infeasibility.
+    None,
+    /// A variable enters after the others flip.
+    Enter { entering: u32, flips: Vec<u32> },
+}
+
+/// A variable that bounds the step.
+#[derive(Clone, Copy, Debug)]
+struct Breakpoint {
+    variable: u32,
+    alpha: f64,
+    slack: f64,
+    range: f64,
+}
+
+impl Breakpoint {
+    fn ratio(&self) -> f64 {
+        self.slack / self.alpha
+    }
+}
+
+/// Chooses the entering variable for the row in `scratch.row`.
+pub(crate) fn choose(core: &mut Core, position: u32, sign: f64) -> Choice {
+    let mut points = breakpoints(core, sign);
+    points
+        .sort_unstable_by(|a, b| a.ratio().total_cmp(&b.ratio()).then(a.variable.cmp(&b.variable)));
+    core.ticks += 2 * points.len() as u64;
+    let slope = core.violation[position as usize].sqrt();
+    let Some(groups) = profitable_groups(&points, slope) else { return Choice::None };
+    let last = best_group(&points, &groups);
+    let Some(entering) = points[groups[last].clone()].iter().reduce(larger_pivot) else {
+        return Choice::None;
+    };
+    let flips = points[..groups[last].start].iter().map(|point| point.variable).collect();
+    Choice::Enter { entering: entering.variable, flips }
+}
+
+/// The variables whose reduced cost falls to zero along the step.
+fn breakpoints(core: &Core, sign: f64) -> Vec<Breakpoint> {
+    let mut points = Vec::new();
+    for (variable, value) in core.scratch.row.iter() {
+        let j = variable as usize;
+        let alpha = sign * value;
+        let blocks = match core.status[j] {
+            Status::Basic => false,
+            Status::Lower => alpha > RATIO_ENTRY && !core.is_fixed(j),
+            Status::Upper => alpha < -RATIO_ENTRY,
+            Status::Free => alpha.abs() > RATIO_ENTRY,
+        };
+        if blocks {
+            let range = core.work_upper[j] - core.work_lower[j];
+            points.push(Breakpoint {
+                variable,
+                alpha: alpha.abs(),
+                slack: core.reduced[j].abs(),
+                range,
+            });
+        }
+    }
+    points
+}
+
+/// The groups up to the one where the slope would end; none when it never does.
+fn profitable_groups(points: &[Breakpoint], slope: f64) -> Option<Vec<Range<usize>>> {
+    let mut bound = vec![f64::INFINITY; points.len()];
+    let mut least = f64::INFINITY;
+    for (k, point) in points.iter().enumerate().rev() {
+        let relaxed = (point.slack + HARRIS_DUAL) / point.alpha;
+        least = if relaxed < least { relaxed } else { least };
+        bound[k] = least;
+    }
+    let mut groups = Vec::new();
+    let (mut start, mut slope) = (0, slope);
+    while start < points.len() {
+        let within =
+            points[start..].iter().take_while(|point| point.ratio() <= bound[start]).count();
+        let end = start + if within == 0 { 1 } else { within };
+        slope -= points[start..end].iter().map(|point| point.alpha * point.range).sum::<f64>();
+        groups.push(start..end);
+        if slope <= PRIMAL {
+            return Some(groups);
+        }
+        start = end;
+    }
+    None
+}
+
+/// The last group whose largest pivot is not small beside the largest of all.
+fn best_group(points: &[Breakpoint], groups: &[Range<usize>]) -> usize {
+    let largest = |range: &Range<usize>| {
+        points[range.clone()].iter().reduce(larger_pivot).map_or(0.0, |point| point.alpha)
+    };
+    let overall =
+        groups.iter().map(largest).fold(0.0, |best, alpha| if alpha > best { alpha } else { best });
+    let enough = if overall < 10.0 { 0.1 * overall } else { 1.0 };
+    groups.iter().rposition(|range| largest(range) >= enough).unwrap_or(0)
+}
+
+/// The one with the larger pivot; the earlier one on ties.
+fn larger_pivot<'a>(a: &'a Breakpoint, b: &'a Breakpoint) -> &'a Breakpoint {
+    if b.alpha > a.alpha { b } else { a }
+}

@@ -1,0 +1,426 @@
+//! The state both simplex methods work on.
+//!
+//! min cᵀx, Ax − s = 0, bounds on x and s: row i has a logical s_i (variable n + i, column −e_i) whose bounds
+//! are the row's range. With y = B⁻ᵀc_B the reduced costs are d_j = c_j − a_jᵀy, and d of a logical is y_i.
+//! The methods may alter *working* costs and bounds (perturbation, shifts); the given ones stay.
+
+use crate::basis::Status;
+use crate::lu::{BasisColumns, Factor};
+use crate::problem::Problem;
+use crate::sparse::{Matrix, SparseVector};
+use crate::tolerances::{self, MARKOWITZ};
+
+/// Vectors kept between iterations so that nothing is allocated in them.
+#[derive(Clone, Debug, Default)]
+pub(crate) struct Scratch {
+    /// A row of B⁻¹.
+    pub(crate) rho: SparseVector,
+    /// That row times [A, −I], by variable.
+    pub(crate) row: SparseVector,
+    /// B⁻¹ times the entering column, by position.
+    pub(crate) column: SparseVector,
+    /// B⁻¹ρ, by position.
+    pub(crate) tau: SparseVector,
+    /// B⁻¹ times the columns of flipped variables, by position.
+    pub(crate) flips: SparseVector,
+}
+
+/// Problem, basis, factors and current values.
+#[derive(Clone, Debug)]
+pub(crate) struct Core {
+    pub(crate) matrix: Matrix,
+    pub(crate) cost: Vec<f64>,
+    pub(crate) lower: Vec<f64>,
+    pub(crate) upper: Vec<f64>,
+    pub(crate) work_cost: Vec<f64>,
+    pub(crate) work_lower: Vec<f64>,
+    pub(crate) work_upper: Vec<f64>,
+    pub(crate) status: Vec<Status>,
+    /// Basic variable by position.
+    pub(crate) head: Vec<u32>,
+    /// Value of the basic variable by position.
+    pub(crate) basic: Vec<f64>,
+    /// Reduced cost by variable, of the working costs.
+    pub(crate) reduced: Vec<f64>,
+    /// Steepest-edge weight by position.
+    pub(crate) weight: Vec<f64>,
+    /// Squared violation of working bounds by position.
+    pub(crate) violation: Vec<f64>,
+    /// Reference weight by variable (primal).
+    pub(crate) devex: Vec<f64>,
+    pub(crate) factor: Factor,
+    /// True while the factors belong to the sorted head and carry no update.
+    pub(crate) canonical: bool,
+    pub(crate) threshold: f64,
+    pub(crate) scratch: Scratch,
+    pub(crate) ticks: u64,
+    pub(crate) iterations: u64,
+    pub(crate) refactors: u32,
+}
+
+impl Core {
+    /// The problem with its slack basis.
+    pub(crate) fn new(problem: Problem) -> Self {
+        let (n, m) = (problem.cost.len(), problem.rows.len());
+        let mut matrix = Matrix::new(n);
+        matrix.append(problem.rows.iter().map(|row| row.entries.as_slice()));
+        let (mut cost, mut lower, mut upper) = (problem.cost, problem.lower, problem.upper);
+        cost.resize(n + m, 0.0);
+        lower.extend(problem.rows.iter().map(|row| row.lower));
+        upper.extend(problem.rows.iter().map(|row| row.upper));
+        let mut core = Self {
+            matrix,
+            work_cost: cost.clone(),
+            work_lower: lower.clone(),
+            work_upper: upper.clone(),
+            cost,
+            lower,
+            upper,
+            status: vec![Status::Lower; n],
+            head: Vec::new(),
+            basic: Vec::new(),
+            reduced: Vec::new(),
+            weight: Vec::new(),
+            violation: Vec::new(),
+            devex: Vec::new(),
+            factor: Factor::default(),
+            canonical: false,
+            threshold: MARKOWITZ,
+            scratch: Scratch::default(),
+            ticks: 0,
+            iterations: 0,
+            refactors: 0,
+        };
+        core.status.resize(n + m, Status::Basic);
+        core.settle_statuses();
+        core.sort_head();
+        core
+    }
+
+    /// Number of columns.
+    pub(crate) fn columns(&self) -> usize {
+        self.matrix.column_count()
+    }
+
+    /// Number of rows.
+    pub(crate) fn rows(&self) -> usize {
+        self.matrix.row_count()
+    }
+
+    /// Number of variables: columns and logicals.
+    pub(crate) fn variables(&self) -> usize {
+        self.status.len()
+    }
+
+    /// Makes the slack basis current.
+    pub(crate) fn reset_to_slack_basis(&mut self) {
+        let n = self.columns();
+        for (j, status) in self.status.iter_mut().enumerate() {
+            *status = if j < n { Status::Lower } else { Status::Basic };
+        }
+        self.settle_statuses();
+        self.head.clear();
+        self.sort_head();
+    }
+
+    /// Sets each working cost and bound to the given one.
+    pub(crate) fn restore_given(&mut self) {
+        self.work_cost.clone_from(&self.cost);
+        self.work_lower.clone_from(&self.lower);
+        self.work_upper.clone_from(&self.upper);
+    }
+
+    /// Moves every nonbasic status to a bound that exists (working bounds); fixed variables count as at the lower one.
+    pub(crate) fn settle_statuses(&mut self) {
+        for j in 0..self.status.len() {
+            if self.status[j] != Status::Basic {
+                self.status[j] = settled(self.status[j], self.work_lower[j], self.work_upper[j]);
+            }
+        }
+    }
+
+    /// Orders the head by variable, weights along with it, and gives every array its length.
+    /// A variable that was not in the head has weight 1.
+    pub(crate) fn sort_head(&mut self) {
+        let (variables, m) = (self.variables(), self.rows());
+        let mut weight = vec![1.0; variables];
+        for (&j, &held) in self.head.iter().zip(&self.weight) {
+            weight[j as usize] = held;
+        }
+        self.head.clear();
+        self.head
+            .extend((0..variables as u32).filter(|&j| self.status[j as usize] == Status::Basic));
+        self.weight.clear();
+        self.weight.extend(self.head.iter().map(|&j| weight[j as usize]));
+        self.basic.resize(m, 0.0);
+        self.violation.resize(m, 0.0);
+        self.reduced.resize(variables, 0.0);
+        self.devex.resize(variables, 1.0);
+        self.scratch.rho.reset(m);
+        self.scratch.row.reset(variables);
+        self.scratch.column.reset(m);
+        self.scratch.tau.reset(m);
+        self.scratch.flips.reset(m);
+        self.canonical = false;
+    }
+
+    /// Factorises the basis in the order of the head. Dependent columns are replaced by
+    /// logicals; returns how many.
+    pub(crate) fn refactor(&mut self) -> u32 {
+        let mut start = Vec::with_capacity(self.head.len() + 1);
+        let mut entry = Vec::new();
+        start.push(0);
+        for &j in &self.head {
+            for_column(&self.matrix, j, |row, value| entry.push((row, value)));
+            start.push(entry.len());
+        }
+        let (factor, replaced, ticks) =
+            Factor::factorise(&BasisColumns::new(start, entry), self.threshold);
+        self.factor = factor;
+        self.ticks += ticks;
+        self.refactors += 1;
+        for r in &replaced {
+            let out = self.head[r.position as usize] as usize;
+            let logical = self.columns() + r.row as usize;
+            self.status[out] = settled(Status::Lower, self.work_lower[out], self.work_upper[out]);
+            self.status[logical] = Status::Basic;
+            self.head[r.position as usize] = logical as u32;
+            self.weight[r.position as usize] = 1.0;
+        }
+        replaced.len() as u32
+    }
+
+    /// Factors of the sorted head without updates; returns how many columns were replaced.
+    pub(crate) fn refactor_canonical(&mut self) -> u32 {
+        if self.canonical && self.factor.updates() == 0 {
+            return 0;
+        }
+        let mut replaced = 0;
+        loop {
+            self.sort_head();
+            let now = self.refactor();
+            replaced += now;
+            if now == 0 {
+                break;
+            }
+        }
+        self.canonical = true;
+        replaced
+    }
+
+    /// The value of a nonbasic variable (working bounds).
+    pub(crate) fn nonbasic_value(&self, j: usize) -> f64 {
+        match self.status[j] {
+            Status::Lower => self.work_lower[j],
+            Status::Upper => self.work_upper[j],
+            Status::Basic | Status::Free => 0.0,
+        }
+    }
+
+    /// True when a variable's working bounds are equal: it never enters.
+    pub(crate) fn is_fixed(&self, j: usize) -> bool {
+        self.work_lower[j] == self.work_upper[j]
+    }
+
+    /// x_B = −B⁻¹ N x_N, and the violations.
+    pub(crate) fn compute_basic(&mut self) {
+        let mut side = std::mem::take(&mut self.scratch.flips);
+        side.clear();
+        for j in 0..self.variables() {
+            let value = self.nonbasic_value(j);
+            if value != 0.0 {
+                self.ticks +=
+                    for_column(&self.matrix, j as u32, |row, entry| side.add(row, -entry * value));
+            }
+        }
+        self.ticks += self.factor.ftran(&mut side);
+        for position in 0..self.rows() {
+            self.basic[position] = side.get(position as u32);
+            self.note_violation(position);
+        }
+        side.clear();
+        self.scratch.flips = side;
+    }
+
+    /// Sets the stored violation of a position from its value.
+    pub(crate) fn note_violation(&mut self, position: usize) {
+        let j = self.head[position] as usize;
+        let excess = excess(self.basic[position], self.work_lower[j], self.work_upper[j]);
+        self.violation[position] = excess * excess;
+    }
+
+    /// y = B⁻ᵀc_B into `scratch.rho`.
+    pub(crate) fn compute_duals(&mut self, given_costs: bool) {
+        let cost = if given_costs { &self.cost } else { &self.work_cost };
+        self.scratch.rho.clear();
+        for (position, &j) in (0u32..).zip(&self.head) {
+            if cost[j as usize] != 0.0 {
+                self.scratch.rho.set(position, cost[j as usize]);
+            }
+        }
+        self.ticks += self.factor.btran(&mut self.scratch.rho);
+    }
+
+    /// Reduced costs of the working costs, zero for basic variables.
+    pub(crate) fn compute_reduced(&mut self) {
+        self.compute_duals(false);
+        let (n, y) = (self.columns(), &self.scratch.rho);
+        for j in 0..self.status.len() {
+            self.reduced[j] = if self.status[j] == Status::Basic {
+                0.0
+            } else if j >= n {
+                self.work_cost[j] + y.get((j - n) as u32)
+            } else {
+                self.work_cost[j]
+                    - self.matrix.column(j).map(|(row, value)| value * y.get(row)).sum::<f64>()
+            };
+        }
+        self.ticks += self.matrix.nonzeros() as u64;
+    }
+
+    /// How far a nonbasic variable's reduced cost has the wrong sign; zero when it has not or the variable is fixed.
+    pub(crate) fn wrong_sign(&self, j: usize) -> f64 {
+        let d = self.reduced[j];
+        let wrong = match self.status[j] {
+            Status::Basic => return 0.0,
+            Status::Lower => -d,
+            Status::Upper => d,
+            Status::Free => d.abs(),
+        };
+        if wrong > 0.0 && !self.is_fixed(j) { wrong } else { 0.0 }
+    }
+
+    /// True when no basic variable is out of its working bounds.
+    pub(crate) fn is_primal_feasible(&self) -> bool {
+        self.violation.iter().all(|&violation| violation == 0.0)
+    }
+
+    /// Largest wrong-signed reduced cost.
+    pub(crate) fn worst_reduced(&self) -> f64 {
+        (0..self.variables()).fold(0.0, |worst, j| {
+            let wrong = self.wrong_sign(j);
+            if wrong > worst { wrong } else { worst }
+        })
+    }
+
+    /// ρ = B⁻ᵀe_r into `scratch.rho` and ρ[A, −I] into `scratch.row`.
+    pub(crate) fn compute_row(&mut self, position: u32) {
+        let mut rho = std::mem::take(&mut self.scratch.rho);
+        rho.clear();
+        rho.set(position, 1.0);
+        self.ticks += self.factor.btran(&mut rho);
+        self.price(&rho);
+        self.scratch.rho = rho;
+    }
+
+    /// ρ[A, −I] into `scratch.row`, row by row of A.
+    fn price(&mut self, rho: &SparseVector) {
+        let n = self.columns() as u32;
+        let row = &mut self.scratch.row;
+        row.clear();
+        for (i, multiplier) in rho.iter() {
+            if multiplier != 0.0 {
+                row.add(n + i, -multiplier);
+                for (j, value) in self.matrix.row(i as usize) {
+                    row.add(j, multiplier * value);
+                }
+            }
+        }
+        self.ticks += row.count() as u64;
+    }
+
+    /// B⁻¹a_j into `scratch.column`.
+    pub(crate) fn compute_column(&mut self, j: u32) {
+        let mut column = std::mem::take(&mut self.scratch.column);
+        column.clear();
+        for_column(&self.matrix, j, |row, value| column.set(row, value));
+        self.ticks += self.factor.ftran(&mut column);
+        self.scratch.column = column;
+    }
+
+    /// True when the pivot of `scratch.column` is large enough and agrees with the one of `scratch.row`.
+    pub(crate) fn pivot_is_sound(&self, position: u32, entering: u32) -> bool {
+        let by_column = self.scratch.column.get(position);
+        let by_row = self.scratch.row.get(entering);
+        let least = if self.factor.updates() > 0 {
+            tolerances::PIVOT_AFTER_UPDATES
+        } else {
+            tolerances::PIVOT_FRESH
+        };
+        by_column.abs() >= least
+            && (by_column - by_row).abs() <= tolerances::PIVOT_AGREEMENT * (1.0 + by_column.abs())
+    }
+
+    /// Puts `entering` at a position with a value; the variable that leaves goes to `leaving_status`.
+    pub(crate) fn exchange(
+        &mut self,
+        position: u32,
+        entering: u32,
+        value: f64,
+        leaving_status: Status,
+    ) {
+        let at = position as usize;
+        let leaving = self.head[at] as usize;
+        self.status[leaving] =
+            settled(leaving_status, self.work_lower[leaving], self.work_upper[leaving]);
+        self.status[entering as usize] = Status::Basic;
+        self.head[at] = entering;
+        self.basic[at] = value;
+        self.note_violation(at);
+        self.factor.update(position, &self.scratch.column);
+        self.canonical = false;
+        self.iterations += 1;
+    }
+
+    /// Basic values after a step along `scratch.column`: x_B ← x_B − step · α.
+    pub(crate) fn move_basic(&mut self, step: f64) {
+        for k in 0..self.scratch.column.count() {
+            let position = self.scratch.column.indices()[k];
+            let change = step * self.scratch.column.get(position);
+            if change != 0.0 {
+                self.basic[position as usize] -= change;
+                self.note_violation(position as usize);
+            }
+        }
+        self.ticks += self.scratch.column.count() as u64;
+    }
+}
+
+/// Calls `visit` with the entries (row, value) of a variable's column; returns how many there are.
+pub(crate) fn for_column(matrix: &Matrix, j: u32, mut visit: impl FnMut(u32, f64)) -> u64 {
+    let n = matrix.column_count();
+    if (j as usize) < n {
+        let mut count = 0;
+        for (row, value) in matrix.column(j as usize) {
+            visit(row, value);
+            count += 1;
+        }
+        count
+    } else {
+        visit(j - n as u32, -1.0);
+        1
+    }
+}
+
+/// A nonbasic status that fits the bounds.
+pub(crate) fn settled(status: Status, lower: f64, upper: f64) -> Status {
+    let (has_lower, has_upper) = (lower > f64::NEG_INFINITY, upper < f64::INFINITY);
+    match (has_lower, has_upper) {
+        (false, false) => Status::Free,
+        (true, false) => Status::Lower,
+        (false, true) => Status::Upper,
+        (true, true) if status == Status::Upper && lower < upper => Status::Upper,
+        (true, true) => Status::Lower,
+    }
+}
+
+/// How far a value is below (negative) or above (positive) its bounds; zero within tolerance.
+pub(crate) fn excess(value: f64, lower: f64, upper: f64) -> f64 {
+    if value < lower - tolerances::primal(lower) {
+        value - lower
+    } else if value > upper + tolerances::primal(upper) {
+        value - upper
+    } else {
+        0.0
+    }
+}

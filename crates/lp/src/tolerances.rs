@@ -1,0 +1,87 @@
+//! Every tolerance of the kernel: what it bounds, absolute or relative, in which units.
+
+/// Violation of a bound or a row range that counts as none; absolute, in the units of the row.
+pub(crate) const PRIMAL: f64 = 1e-9;
+
+/// What is added to [`PRIMAL`] per unit of the bound's own size: rounding of large values; relative.
+pub(crate) const PRIMAL_RELATIVE: f64 = 1e-14;
+
+/// Wrong-signed reduced cost that counts as none; absolute, in units of the objective per unit of the column.
+pub(crate) const DUAL: f64 = 1e-9;
+
+/// How far reduced costs may overstep zero in the first pass of the dual ratio test (Harris 1973); absolute.
+pub(crate) const HARRIS_DUAL: f64 = 1e-9;
+
+/// How far basic values may overstep a bound in the first pass of the primal ratio test; absolute.
+pub(crate) const HARRIS_PRIMAL: f64 = 1e-9;
+
+/// Entries of a tableau row or column below this take no part in a ratio test; absolute.
+pub(crate) const RATIO_ENTRY: f64 = 1e-9;
+
+/// Smallest pivot taken while the factors carry updates; below it they are made afresh first; absolute.
+pub(crate) const PIVOT_AFTER_UPDATES: f64 = 1e-5;
+
+/// Smallest pivot taken with fresh factors; absolute.
+pub(crate) const PIVOT_FRESH: f64 = 1e-8;
+
+/// Difference allowed between a pivot computed by row and by column; relative to 1 + |pivot|.
+pub(crate) const PIVOT_AGREEMENT: f64 = 1e-7;
+
+/// Values produced by a triangular solve below this are taken for cancelled; absolute.
+pub(crate) const SOLVE_DROP: f64 = 1e-14;
+
+/// Entries of the active submatrix below this are taken for cancelled; absolute.
+pub(crate) const FACTOR_DROP: f64 = 1e-14;
+
+/// Pivots of the factorisation below this make the basis singular; absolute.
+pub(crate) const SINGULAR: f64 = 1e-10;
+
+/// Threshold pivoting: a pivot is at least this share of the largest entry of its row.
+pub(crate) const MARKOWITZ: f64 = 0.1;
+
+/// The same share when a solve is repeated with care.
+pub(crate) const MARKOWITZ_CAREFUL: f64 = 0.5;
+
+/// Columns and rows examined in one Markowitz search (Suhl, Suhl 1990).
+pub(crate) const MARKOWITZ_CANDIDATES: usize = 4;
+
+/// A stored steepest-edge weight this many times off the computed one is mended before the row is used.
+pub(crate) const WEIGHT_RATIO: f64 = 4.0;
+
+/// Smallest steepest-edge weight.
+pub(crate) const WEIGHT_FLOOR: f64 = 1e-4;
+
+/// Steps without progress before costs or bounds are perturbed.
+pub(crate) const STALL: u32 = 40;
+
+/// Size of a cost perturbation, relative to 1 + |cost|.
+pub(crate) const PERTURB_COST: f64 = 5e-7;
+
+/// Size of a bound perturbation, relative to 1 + |bound|.
+pub(crate) const PERTURB_BOUND: f64 = 1e-7;
+
+/// Updates before the factors are made afresh.
+pub(crate) const UPDATES: usize = 64;
+
+/// Share of nonzeros up to which a triangular solve looks for its reach first (Gilbert, Peierls 1988).
+pub(crate) const HYPERSPARSE: f64 = 0.05;
+
+/// Row violation of a released point; relative to 1 + the largest |a x| of the row.
+pub(crate) const VERIFY_ROW: f64 = 2e-9;
+
+/// Wrong-signed reduced cost of released duals; relative to 1 + the largest |y a| of the column.
+pub(crate) const VERIFY_DUAL: f64 = 2e-9;
+
+/// Difference of primal and dual objective of a released optimum; relative to 1 + the sum of the terms' sizes.
+pub(crate) const VERIFY_GAP: f64 = 1e-8;
+
+/// Noise in a column of a released ray, taken for zero; relative to the sum of the terms' sizes.
+pub(crate) const VERIFY_RAY: f64 = 1e-9;
+
+/// A Farkas proof must exceed zero by this; relative to the sum of the terms' sizes.
+pub(crate) const VERIFY_FARKAS: f64 = 1e-9;
+
+/// The tolerance for a violation of a bound of this size.
+pub(crate) fn primal(bound: f64) -> f64 {
+    PRIMAL + PRIMAL_RELATIVE * bound.abs()
+}

@@ -1,0 +1,208 @@
+//! What is released is checked against the caller's rows, bounds and costs, not against the kernel's own books.
+//!
+//! For multipliers y and g = c − Aᵀy the dual bound is b(y) = Σ_i min(y_i L_i, y_i U_i) + Σ_j min(g_j l_j, g_j u_j).
+//! It bounds cᵀx from below; with c = 0, b(y) > 0 proves that there is no feasible point.
+
+use crate::basis::Status;
+use crate::outcome::{Ray, Solution};
+use crate::state::{Core, excess};
+use crate::tolerances::{VERIFY_DUAL, VERIFY_FARKAS, VERIFY_GAP, VERIFY_RAY, VERIFY_ROW};
+
+/// A dual bound: its value and the sum of its terms' sizes.
+#[derive(Clone, Copy, Debug)]
+struct DualBound {
+    value: f64,
+    size: f64,
+}
+
+impl DualBound {
+    /// Adds min(d l, d u); false when that is −∞ and d is more than noise.
+    fn add(&mut self, d: f64, (lower, upper): (f64, f64), noise: f64) -> bool {
+        let bound = if d > 0.0 { lower } else { upper };
+        if d == 0.0 {
+            return true;
+        }
+        if bound.is_finite() {
+            self.value += d * bound;
+            self.size += (d * bound).abs();
+            return true;
+        }
+        d.abs() <= noise
+    }
+}
+
+impl Core {
+    /// b(y), or none when a term is −∞ by more than `noise` times the size of its column.
+    fn dual_value(&self, y: &[f64], with_costs: bool, noise: f64) -> Option<DualBound> {
+        let n = self.columns();
+        let mut bound = DualBound { value: 0.0, size: 0.0 };
+        for (i, &multiplier) in y.iter().enumerate() {
+            if !bound.add(multiplier, (self.lower[n + i], self.upper[n + i]), noise) {
+                return None;
+            }
+        }
+        for j in 0..n {
+            let mut d = if with_costs { self.cost[j] } else { 0.0 };
+            let mut size = d.abs();
+            for (row, value) in self.matrix.column(j) {
+                let term = value * y[row as usize];
+                d -= term;
+                size += term.abs();
+            }
+            let room = if with_costs { noise * (1.0 + size) } else { noise * size };
+            if !bound.add(d, (self.lower[j], self.upper[j]), room) {
+                return None;
+            }
+        }
+        Some(bound)
+    }
+
+    /// The bound that multipliers give on the optimal value, noise against missing bounds forgiven.
+    pub(crate) fn dual_bound(&self, y: &[f64]) -> Option<f64> {
+        self.dual_value(y, true, VERIFY_DUAL).map(|bound| bound.value)
+    }
+
+    /// The multipliers `sign` · `scratch.rho` as a ray, if they prove infeasibility.
+    pub(crate) fn farkas_ray(&self, sign: f64) -> Option<Ray> {
+        let rho = &self.scratch.rho;
+        let largest =
+            rho.iter().fold(
+                0.0,
+                |largest, (_, value)| if value.abs() > largest { value.abs() } else { largest },
+            );
+        if largest == 0.0 {
+            return None;
+        }
+        let mut multipliers = vec![0.0; self.rows()];
+        for (row, value) in rho.iter() {
+            multipliers[row as usize] = sign * value / largest;
+        }
+        self.tidy_ray(&mut multipliers);
+        self.proves_infeasible(&multipliers).then_some(Ray { multipliers })
+    }
+
+    /// Drops what is noise and what would need a side that is missing.
+    fn tidy_ray(&self, multipliers: &mut [f64]) {
+        let n = self.columns();
+        for (i, y) in multipliers.iter_mut().enumerate() {
+            let missing = if *y > 0.0 {
+                self.lower[n + i].is_infinite()
+            } else {
+                self.upper[n + i].is_infinite()
+            };
+            if y.abs() < VERIFY_RAY * 1e-3 || (missing && y.abs() < VERIFY_RAY) {
+                *y = 0.0;
+            }
+        }
+    }
+
+    /// True when the multipliers prove that there is no feasible point.
+    pub(crate) fn proves_infeasible(&self, multipliers: &[f64]) -> bool {
+        self.dual_value(multipliers, false, VERIFY_RAY)
+            .is_some_and(|bound| bound.value > VERIFY_FARKAS * bound.size)
+    }
+
+    /// The values of the columns, basic ones clipped to their bounds (by no more than the tolerance, when feasible).
+    fn point(&self) -> Vec<f64> {
+        let n = self.columns();
+        let mut x: Vec<f64> = (0..n)
+            .map(|j| if self.status[j] == Status::Basic { 0.0 } else { self.nonbasic_value(j) })
+            .collect();
+        for (&j, &value) in self.head.iter().zip(&self.basic) {
+            let j = j as usize;
+            if j < n {
+                let above = if value < self.lower[j] { self.lower[j] } else { value };
+                x[j] = if above > self.upper[j] { self.upper[j] } else { above };
+            }
+        }
+        x
+    }
+
+    /// Row activities at a point, and the size of the largest term of each.
+    fn activities(&self, x: &[f64]) -> Vec<(f64, f64)> {
+        let row = |i: usize| {
+            self.matrix.row(i).fold((0.0, 0.0), |(sum, size): (f64, f64), (j, value)| {
+                let term = value * x[j as usize];
+                (sum + term, if term.abs() > size { term.abs() } else { size })
+            })
+        };
+        (0..self.rows()).map(row).collect()
+    }
+
+    /// Checks that a point is within its bounds and rows; gives the activities.
+    fn check_point(&self, x: &[f64]) -> Result<Vec<f64>, String> {
+        let n = self.columns();
+        if let Some(j) =
+            (0..n).find(|&j| !x[j].is_finite() || excess(x[j], self.lower[j], self.upper[j]) != 0.0)
+        {
+            return Err(format!("column {j} is out of its bounds"));
+        }
+        let activities = self.activities(x);
+        for (i, &(activity, size)) in activities.iter().enumerate() {
+            let room = VERIFY_ROW * (1.0 + size);
+            if activity.is_nan()
+                || activity < self.lower[n + i] - room
+                || activity > self.upper[n + i] + room
+            {
+                return Err(format!("row {i} is violated"));
+            }
+        }
+        Ok(activities.into_iter().map(|(activity, _)| activity).collect())
+    }
+
+    /// The solution of the current basis (given costs and bounds), checked.
+    pub(crate) fn solution(&self) -> Result<Solution, String> {
+        let n = self.columns();
+        let x = self.point();
+        let activity = self.check_point(&x)?;
+        let duals = self.reduced[n..].to_vec();
+        let objective: f64 = x.iter().zip(&self.cost).map(|(x, cost)| x * cost).sum();
+        let size: f64 = x.iter().zip(&self.cost).map(|(x, cost)| (x * cost).abs()).sum();
+        let Some(bound) = self.dual_value(&duals, true, VERIFY_DUAL) else {
+            return Err("a reduced cost has the wrong sign".to_owned());
+        };
+        let gap = objective - bound.value;
+        if gap.is_nan() || gap.abs() > VERIFY_GAP * (1.0 + size + bound.size) {
+            return Err("primal and dual objective differ".to_owned());
+        }
+        Ok(Solution { objective, x, activity, duals, reduced_costs: self.reduced[..n].to_vec() })
+    }
+
+    /// A feasible point and the direction in which `entering` moves, both checked.
+    pub(crate) fn unbounded_ray(
+        &self,
+        entering: u32,
+        direction: f64,
+    ) -> Result<(Vec<f64>, Vec<f64>), String> {
+        let n = self.columns();
+        let point = self.point();
+        self.check_point(&point)?;
+        let mut ray = vec![0.0; n];
+        if (entering as usize) < n {
+            ray[entering as usize] = direction;
+        }
+        for (position, alpha) in self.scratch.column.iter() {
+            let j = self.head[position as usize] as usize;
+            if j < n && alpha.abs() > VERIFY_RAY {
+                ray[j] = -direction * alpha;
+            }
+        }
+        let recedes = |value: f64, size: f64, j: usize| {
+            let room = VERIFY_RAY * size;
+            (value >= -room || self.lower[j].is_infinite())
+                && (value <= room || self.upper[j].is_infinite())
+        };
+        let columns = (0..n).all(|j| recedes(ray[j], 1.0, j));
+        let rows = self
+            .activities(&ray)
+            .iter()
+            .enumerate()
+            .all(|(i, &(value, size))| recedes(value, 10.0 * size, n + i));
+        let slope: f64 = ray.iter().zip(&self.cost).map(|(ray, cost)| ray * cost).sum();
+        if columns && rows && slope < 0.0 {
+            Ok((point, ray))
+        } else {
+            Err("the unbounded ray leaves the feasible set".to_owned())
+        }
+    }
+}

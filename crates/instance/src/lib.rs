@@ -1,1 +1,44 @@
 //! Sets, tables and geometry, and the readers of pasted text.
+//!
+//! [`read`] takes a text and gives a [`Reading`]: an [`Instance`] where the text could be read,
+//! what was understood in sentences, and every place that was not, with its mend. Numbers are
+//! exact: decimal text becomes a rational. Nothing here fails or panics on any text.
+//!
+//! | reader | takes |
+//! |---|---|
+//! | [`Reader::Matrix`] | a table of distances, whole or half, with or without labels |
+//! | [`Reader::Points`] | points in the plane: `label x y` or `x y` |
+//! | [`Reader::Tsplib`] | a TSPLIB file (Reinelt, ORSA Journal on Computing 3, 1991) of type TSP or ATSP |
+//! | [`Reader::Blocks`] | named sets, tables and numbers under headings |
+//!
+//! The first three give a round trip: the stops `V`, the distances `c` over pairs of them, and by
+//! habit (see [`Instance::assumed`]) the drives `A`, the root `r` and, on symmetric data, the
+//! edges `E`. [`layout()`] gives each stop a place on the map.
+
+mod blocks;
+mod cells;
+mod complaint;
+mod facts;
+mod finish;
+mod instance;
+mod layout;
+mod matrix;
+mod number;
+mod points;
+mod read;
+mod sniff;
+mod square;
+mod text;
+mod triangle;
+mod tsplib;
+
+pub use complaint::{Complaint, Severity};
+pub use instance::{Datum, Instance, Points, Reader};
+pub use layout::{Layout, layout};
+pub use number::{Number, number_text};
+pub use read::{Reading, read};
+
+/// The longest text that is read, in bytes.
+pub const MAX_TEXT: usize = 8 << 20;
+/// The largest number of stops of a round trip.
+pub const MAX_STOPS: usize = 2_000;

@@ -1,0 +1,34 @@
+//! From the square of a round trip to the instance and what is said of it.
+
+use crate::facts;
+use crate::instance::{Instance, Points, Reader};
+use crate::square::Square;
+
+/// What a reader of round trips found.
+pub(crate) struct RoundTrip {
+    pub(crate) title: String,
+    pub(crate) unit: String,
+    pub(crate) square: Square,
+    pub(crate) points: Option<Points>,
+    /// Sentences of the reader's own.
+    pub(crate) notes: Vec<String>,
+    /// How the text was read: "a matrix with labels, cells separated by tabs".
+    pub(crate) how: String,
+}
+
+/// The instance and the sentences.
+pub(crate) fn finish(reader: Reader, trip: RoundTrip) -> (Instance, Vec<String>) {
+    let mut sentences = facts::of(&trip.square, &trip.unit);
+    sentences.extend(
+        trip.points.as_ref().and_then(|points| facts::same_places(&trip.square.labels, points)),
+    );
+    sentences.extend(trip.notes);
+    sentences.push(format!("Read as {}; every line was read.", trip.how));
+    let Square { labels, cells } = trip.square;
+    let mut instance = Instance::round_trip(labels, &cells);
+    instance.title = trip.title;
+    instance.unit = trip.unit;
+    instance.reader = reader;
+    instance.points = trip.points;
+    (instance, sentences)
+}

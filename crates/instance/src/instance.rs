@@ -1,0 +1,220 @@
+//! The instance: named sets, tables, numbers and elements, in the order in which they came.
+
+use std::collections::{BTreeMap, BTreeSet};
+
+use crate::number::Number;
+
+/// A way to read a text.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Reader {
+    /// A distance matrix.
+    Matrix,
+    /// Points in the plane.
+    Points,
+    /// A TSPLIB file.
+    Tsplib,
+    /// Named blocks.
+    Blocks,
+}
+
+impl Reader {
+    /// Every reader.
+    pub const ALL: [Self; 4] = [Self::Matrix, Self::Points, Self::Tsplib, Self::Blocks];
+
+    /// The name by which scenarios choose it.
+    #[must_use]
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::Matrix => "matrix",
+            Self::Points => "points",
+            Self::Tsplib => "tsplib",
+            Self::Blocks => "blocks",
+        }
+    }
+
+    /// The reader of that name, if there is one.
+    #[must_use]
+    pub fn from_name(name: &str) -> Option<Self> {
+        Self::ALL.into_iter().find(|reader| reader.name() == name)
+    }
+}
+
+/// One named thing that an instance supplies.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Datum {
+    /// A set of labels, in the order of listing.
+    Labels(Vec<String>),
+    /// A set of whole numbers, in the order of listing.
+    Integers(Vec<i64>),
+    /// A set of tuples.
+    Tuples {
+        /// Cells in each tuple.
+        arity: usize,
+        /// The tuples, in the order of listing.
+        rows: Vec<Vec<String>>,
+    },
+    /// A number.
+    Number(Number),
+    /// An element of a set.
+    Element(String),
+    /// Numbers over tuples.
+    Table {
+        /// Cells in each index tuple.
+        arity: usize,
+        /// The number at each tuple that has one.
+        cells: BTreeMap<Vec<String>, Number>,
+    },
+}
+
+/// Where the stops stand, in the order of `V`.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Points {
+    /// Across (growing to the right) and along (growing upwards), in the units of the text.
+    pub places: Vec<(f64, f64)>,
+    /// Whether they are longitude and latitude in degrees.
+    pub geographic: bool,
+}
+
+/// What a formulation is run on.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Instance {
+    /// The title found in the text; may be empty.
+    pub title: String,
+    /// The unit of the distances ("minutes"); empty when the text does not name one.
+    pub unit: String,
+    /// The reader that read it.
+    pub reader: Reader,
+    /// Where the stops stand, when the text says so.
+    pub points: Option<Points>,
+    /// The names that the text does not hold and the reader's habit supplies.
+    pub assumed: BTreeSet<String>,
+    data: Vec<(String, Datum)>,
+}
+
+impl Instance {
+    /// An instance that holds nothing yet.
+    #[must_use]
+    pub fn new(reader: Reader) -> Self {
+        Self {
+            title: String::new(),
+            unit: String::new(),
+            reader,
+            points: None,
+            assumed: BTreeSet::new(),
+            data: Vec::new(),
+        }
+    }
+
+    /// A round trip over `labels`: `cells` holds the distances by rows, `None` where there is no
+    /// drive; the diagonal is not looked at and missing cells count as `None`. Supplies `V` and
+    /// `c`, and assumes `A`, `r` and, where `c` is symmetric, `E` (pairs in the order of listing).
+    #[must_use]
+    pub fn round_trip(labels: Vec<String>, cells: &[Option<Number>]) -> Self {
+        let n = labels.len();
+        let at = |i: usize, j: usize| if i == j { None } else { cells.get(i * n + j)?.as_ref() };
+        let mut table = BTreeMap::new();
+        let (mut drives, mut edges, mut symmetric) = (Vec::new(), Vec::new(), true);
+        for i in 0..n {
+            for j in 0..n {
+                symmetric &= at(i, j) == at(j, i);
+                let Some(value) = at(i, j) else { continue };
+                let pair = vec![labels[i].clone(), labels[j].clone()];
+                if i < j {
+                    edges.push(pair.clone());
+                }
+                drives.push(pair.clone());
+                table.insert(pair, value.clone());
+            }
+        }
+        let root = labels.first().cloned();
+        let mut instance = Self::new(Reader::Matrix);
+        instance.set("V", Datum::Labels(labels));
+        instance.set("c", Datum::Table { arity: 2, cells: table });
+        instance.assume("A", Datum::Tuples { arity: 2, rows: drives });
+        if let Some(root) = root {
+            instance.assume("r", Datum::Element(root));
+        }
+        if symmetric {
+            instance.assume("E", Datum::Tuples { arity: 2, rows: edges });
+        }
+        instance
+    }
+
+    /// Sets the datum `name`, in its old place if there is one.
+    pub fn set(&mut self, name: &str, datum: Datum) {
+        match self.data.iter_mut().find(|(known, _)| known == name) {
+            Some(place) => place.1 = datum,
+            None => self.data.push((name.to_owned(), datum)),
+        }
+    }
+
+    /// Sets the datum `name` and marks it as supplied by habit.
+    pub fn assume(&mut self, name: &str, datum: Datum) {
+        self.set(name, datum);
+        self.assumed.insert(name.to_owned());
+    }
+
+    /// The datum of that name.
+    #[must_use]
+    pub fn get(&self, name: &str) -> Option<&Datum> {
+        self.data.iter().find(|(known, _)| known == name).map(|(_, datum)| datum)
+    }
+
+    /// Every datum with its name, in order.
+    pub fn data(&self) -> impl Iterator<Item = (&str, &Datum)> {
+        self.data.iter().map(|(name, datum)| (name.as_str(), datum))
+    }
+
+    /// The stops: the labels of `V`; empty when there is no such set.
+    #[must_use]
+    pub fn stops(&self) -> &[String] {
+        match self.get("V") {
+            Some(Datum::Labels(labels)) => labels,
+            _ => &[],
+        }
+    }
+
+    /// The distances `c` over [`Self::stops`] by rows, `None` where there is no drive; empty
+    /// when the instance is no round trip. O(n² log n).
+    #[must_use]
+    pub fn matrix(&self) -> Vec<Option<&Number>> {
+        let Some(Datum::Table { arity: 2, cells }) = self.get("c") else { return Vec::new() };
+        let stops = self.stops();
+        let mut matrix = Vec::with_capacity(stops.len() * stops.len());
+        for from in stops {
+            for to in stops {
+                let pair = vec![from.clone(), to.clone()];
+                matrix.push(if from == to { None } else { cells.get(&pair) });
+            }
+        }
+        matrix
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_round_trip_supplies_its_habits() {
+        let cell = |value: u32| Some(Number::from(value));
+        let labels = vec!["a".to_owned(), "b".to_owned()];
+        let instance = Instance::round_trip(labels.clone(), &[cell(9), cell(1), cell(2), cell(9)]);
+        assert_eq!(instance.stops(), labels);
+        assert_eq!(instance.get("r"), Some(&Datum::Element("a".to_owned())));
+        assert_eq!(instance.get("E"), None);
+        let names: Vec<_> = instance.data().map(|(name, _)| name).collect();
+        assert_eq!(names, ["V", "c", "A", "r"]);
+        assert!(instance.assumed.contains("A") && !instance.assumed.contains("c"));
+        let matrix = instance.matrix();
+        assert_eq!(matrix, [None, Some(&Number::from(1u32)), Some(&Number::from(2u32)), None]);
+    }
+
+    #[test]
+    fn names_of_readers_round_trip() {
+        for reader in Reader::ALL {
+            assert_eq!(Reader::from_name(reader.name()), Some(reader));
+        }
+        assert_eq!(Reader::from_name("spreadsheet"), None);
+    }
+}

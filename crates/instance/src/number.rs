@@ -1,0 +1,220 @@
+//! Exact numbers from decimal text, and back.
+
+use dashu_int::{IBig, UBig};
+use dashu_ratio::RBig;
+
+/// An exact rational number.
+pub type Number = RBig;
+
+/// Digits and powers of ten beyond this are refused: no table needs them.
+const MAX_DIGITS: usize = 36;
+
+/// Why a text is no number.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum NotNumber {
+    /// It holds a decimal comma where decimals have a point.
+    Comma,
+    /// It holds a point where decimals have a comma.
+    Point,
+    /// It looks like a time of day or a duration.
+    Clock,
+    /// A number is followed by a word, as in `12 min`.
+    Suffix,
+    /// It has too many digits or too large a power of ten.
+    TooLong,
+    /// Anything else.
+    Other,
+}
+
+impl NotNumber {
+    /// How to mend it.
+    pub(crate) fn mend(self) -> &'static str {
+        match self {
+            Self::Comma => "This table has decimal points: write a point, and no thousands marks.",
+            Self::Point => "This table has decimal commas: write a comma, and no thousands marks.",
+            Self::Clock => "Write the duration as one number, e.g. 90 for 1:30.",
+            Self::Suffix => "Write the number alone, without its unit.",
+            Self::TooLong => "Write at most 36 digits and powers of ten up to 36.",
+            Self::Other => "Write a number, or leave the cell blank where there is no drive.",
+        }
+    }
+}
+
+/// Reads a decimal number (`12`, `-1.5`, `.5`, `2e3`) or a fraction (`1/3`), exactly.
+pub(crate) fn parse(text: &str, decimal_comma: bool) -> Result<Number, NotNumber> {
+    let (negative, body) = sign(text);
+    let magnitude = match body.split_once('/') {
+        Some((above, below)) => fraction(above, below)?,
+        None => decimal(body, if decimal_comma { b',' } else { b'.' })?,
+    };
+    Ok(if negative { -magnitude } else { magnitude })
+}
+
+fn sign(text: &str) -> (bool, &str) {
+    for (mark, negative) in [("-", true), ("\u{2212}", true), ("+", false)] {
+        if let Some(rest) = text.strip_prefix(mark) {
+            return (negative, rest);
+        }
+    }
+    (false, text)
+}
+
+fn fraction(above: &str, below: &str) -> Result<Number, NotNumber> {
+    let above = whole(above).ok_or(NotNumber::Other)?;
+    let below = whole(below).ok_or(NotNumber::Other)?;
+    if below == 0 {
+        return Err(NotNumber::Other);
+    }
+    Ok(RBig::from_parts(IBig::from(above), UBig::from(below)))
+}
+
+fn whole(text: &str) -> Option<u128> {
+    let digits = !text.is_empty() && text.bytes().all(|byte| byte.is_ascii_digit());
+    if digits && text.len() <= MAX_DIGITS { text.parse().ok() } else { None }
+}
+
+fn decimal(body: &str, point: u8) -> Result<Number, NotNumber> {
+    let bytes = body.as_bytes();
+    let (mut value, mut digits, mut places, mut at) = (0_u128, 0_usize, None, 0_usize);
+    while at < bytes.len() {
+        match bytes[at] {
+            byte if byte.is_ascii_digit() => {
+                digits += 1;
+                places = places.map(|count: usize| count + 1);
+                if digits <= MAX_DIGITS {
+                    value = value * 10 + u128::from(byte - b'0');
+                }
+            }
+            byte if byte == point && places.is_none() => places = Some(0),
+            b'e' | b'E' if digits > 0 => break,
+            _ => return Err(reason(body, point)),
+        }
+        at += 1;
+    }
+    if digits == 0 {
+        return Err(NotNumber::Other);
+    }
+    let exponent = if at < bytes.len() { exponent(&body[at + 1..])? } else { 0 };
+    if digits > MAX_DIGITS {
+        return Err(NotNumber::TooLong);
+    }
+    let places = i32::try_from(places.unwrap_or(0)).map_err(|_| NotNumber::TooLong)?;
+    Ok(scaled(value, exponent - places))
+}
+
+fn exponent(text: &str) -> Result<i32, NotNumber> {
+    let (negative, digits) = sign(text);
+    if digits.is_empty() || !digits.bytes().all(|byte| byte.is_ascii_digit()) {
+        return Err(NotNumber::Other);
+    }
+    match digits.parse::<i32>() {
+        Ok(value) if value <= 36 => Ok(if negative { -value } else { value }),
+        _ => Err(NotNumber::TooLong),
+    }
+}
+
+/// `value` times ten to the power `power`.
+fn scaled(value: u128, power: i32) -> Number {
+    let factor = UBig::from(10_u8).pow(power.unsigned_abs() as usize);
+    if power < 0 {
+        RBig::from_parts(IBig::from(value), factor)
+    } else {
+        RBig::from(IBig::from(value) * IBig::from(factor))
+    }
+}
+
+/// Why `body`, which does not read as a decimal, might be thought a number.
+fn reason(body: &str, point: u8) -> NotNumber {
+    let begins = body.starts_with(|c: char| c.is_ascii_digit());
+    let only = |marks: &str| body.chars().all(|c| c.is_ascii_digit() || marks.contains(c));
+    if begins && only(":") {
+        NotNumber::Clock
+    } else if begins && only(",.") && body.contains(',') && point == b'.' {
+        NotNumber::Comma
+    } else if begins && only(",.") && body.contains('.') && point == b',' {
+        NotNumber::Point
+    } else if begins && body.contains(char::is_alphabetic) {
+        NotNumber::Suffix
+    } else {
+        NotNumber::Other
+    }
+}
+
+/// A number as text that reads back as the same: a decimal where it ends, else a fraction.
+#[must_use]
+pub fn number_text(number: &Number) -> String {
+    let (mut places, mut power) = (0_usize, UBig::ONE);
+    while places <= MAX_DIGITS {
+        if (&power % number.denominator()).is_zero() {
+            return decimal_text(number, &power, places);
+        }
+        power *= UBig::from(10_u8);
+        places += 1;
+    }
+    number.to_string()
+}
+
+fn decimal_text(number: &Number, power: &UBig, places: usize) -> String {
+    let scaled = number.numerator() * IBig::from(power / number.denominator());
+    let text = scaled.to_string();
+    let (minus, digits) = text.strip_prefix('-').map_or(("", text.as_str()), |rest| ("-", rest));
+    if places == 0 {
+        return format!("{minus}{digits}");
+    }
+    let padded = format!("{digits:0>width$}", width = places + 1);
+    let (whole, part) = padded.split_at(padded.len() - places);
+    format!("{minus}{whole}.{part}")
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    #[test]
+    fn decimals_are_exact() {
+        let tenth = RBig::from_parts(1.into(), 10_u8.into());
+        assert_eq!(parse("0.1", false), Ok(tenth.clone()));
+        assert_eq!(parse("0,1", true), Ok(tenth.clone()));
+        assert_eq!(parse("+.10", false), Ok(tenth.clone()));
+        assert_eq!(parse("1e-1", false), Ok(tenth));
+        assert_eq!(parse("\u{2212}2.5E1", false), Ok(RBig::from(-25)));
+        assert_eq!(parse("5.", false), Ok(RBig::from(5)));
+        assert_eq!(parse("-0", false), Ok(RBig::ZERO));
+        assert_eq!(parse("-2/4", false), Ok(-RBig::from_parts(1.into(), 2_u8.into())));
+    }
+
+    #[test]
+    fn what_is_no_number_says_why() {
+        assert_eq!(parse("1,5", false), Err(NotNumber::Comma));
+        assert_eq!(parse("1.5", true), Err(NotNumber::Point));
+        assert_eq!(parse("1:30", false), Err(NotNumber::Clock));
+        assert_eq!(parse("12min", false), Err(NotNumber::Suffix));
+        for text in ["", ".", "-", "e5", "1e", "1/0", "1/", "--1", "Ash", "٣"] {
+            assert_eq!(parse(text, false), Err(NotNumber::Other), "{text}");
+        }
+        assert_eq!(parse(&"9".repeat(37), false), Err(NotNumber::TooLong));
+        assert_eq!(parse("1e99", false), Err(NotNumber::TooLong));
+        assert_eq!(parse("1e99999999999", false), Err(NotNumber::TooLong));
+    }
+
+    #[test]
+    fn texts_are_short() {
+        for text in ["0", "-7", "12.5", "-0.05", "1/3", "1000"] {
+            assert_eq!(number_text(&parse(text, false).unwrap()), text);
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn print_then_read(above in any::<i64>(), below in 1_u64..1_000_000) {
+            let number = RBig::from_parts(above.into(), below.into());
+            prop_assert_eq!(parse(&number_text(&number), false), Ok(number));
+        }
+
+        #[test]
+        fn nothing_panics(text in "\\PC{0,40}", comma in any::<bool>()) {
+            let _ = parse(&text, comma);
+        }
+    }
+}

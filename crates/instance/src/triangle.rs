@@ -1,0 +1,155 @@
+//! The triangle inequality c_ij ≤ c_ik + c_kj over triples of stops, in scaled integers.
+
+use dashu_int::{IBig, UBig, ops::Gcd};
+use dashu_ratio::RBig;
+
+use crate::number::number_text;
+use crate::square::Square;
+
+/// Up to this many stops every triple is looked at.
+pub(crate) const EVERY_TRIPLE: usize = 300;
+/// Beyond, this many triples are drawn.
+pub(crate) const DRAWN: usize = 1_000_000;
+
+/// Distances as multiples of 1 / `denominator`.
+pub(crate) struct Scaled {
+    pub(crate) n: usize,
+    pub(crate) values: Vec<Option<i128>>,
+    denominator: UBig,
+}
+
+impl Scaled {
+    /// `None` when the numbers are too long for sums in 128 bits.
+    pub(crate) fn of(square: &Square) -> Option<Self> {
+        let mut denominator = UBig::ONE;
+        for number in square.cells.iter().flatten() {
+            if !(&denominator % number.denominator()).is_zero() {
+                let common = (&denominator).gcd(number.denominator());
+                denominator = denominator / common * number.denominator();
+            }
+            u128::try_from(&denominator).ok()?;
+        }
+        let scale = |number: &RBig| {
+            let factor = IBig::from(&denominator / number.denominator());
+            let value = i128::try_from(number.numerator() * factor).ok()?;
+            (value.unsigned_abs() < 1 << 120).then_some(value)
+        };
+        let mut values = Vec::with_capacity(square.cells.len());
+        for cell in &square.cells {
+            values.push(match cell {
+                Some(number) => Some(scale(number)?),
+                None => None,
+            });
+        }
+        Some(Self { n: square.len(), values, denominator })
+    }
+
+    pub(crate) fn at(&self, i: usize, j: usize) -> Option<i128> {
+        self.values[i * self.n + j]
+    }
+
+    /// A multiple as a number in words.
+    pub(crate) fn text(&self, value: i128) -> String {
+        number_text(&RBig::from_parts(IBig::from(value), self.denominator.clone()))
+    }
+}
+
+/// How often the triangle inequality is broken.
+#[derive(Debug, Default, PartialEq, Eq)]
+pub(crate) struct Triangles {
+    /// Triples of different stops that have all three drives.
+    pub(crate) examined: usize,
+    pub(crate) broken: usize,
+    /// The excess and the stops from, by way of, to of the worst one.
+    pub(crate) worst: Option<(i128, [usize; 3])>,
+}
+
+impl Triangles {
+    fn look(&mut self, scaled: &Scaled, [i, k, j]: [usize; 3]) {
+        let (Some(direct), Some(first), Some(second)) =
+            (scaled.at(i, j), scaled.at(i, k), scaled.at(k, j))
+        else {
+            return;
+        };
+        self.examined += 1;
+        let excess = direct - first - second;
+        if excess > 0 {
+            self.broken += 1;
+            if self.worst.is_none_or(|(most, _)| excess > most) {
+                self.worst = Some((excess, [i, k, j]));
+            }
+        }
+    }
+}
+
+/// Looks at every triple up to [`EVERY_TRIPLE`] stops, else at [`DRAWN`] ones drawn with a fixed
+/// seed. O(n³), or O(drawn).
+pub(crate) fn triangles(scaled: &Scaled) -> Triangles {
+    let mut found = Triangles::default();
+    let n = scaled.n;
+    if n <= EVERY_TRIPLE {
+        for i in 0..n {
+            for k in (0..n).filter(|&k| k != i) {
+                for j in (0..n).filter(|&j| j != i && j != k) {
+                    found.look(scaled, [i, k, j]);
+                }
+            }
+        }
+        return found;
+    }
+    let mut draw = Draw(1);
+    for _ in 0..DRAWN {
+        let [i, k, j] = [draw.below(n), draw.below(n), draw.below(n)];
+        if i != k && k != j && i != j {
+            found.look(scaled, [i, k, j]);
+        }
+    }
+    found
+}
+
+/// A linear congruential generator (Knuth, The Art of Computer Programming 2, MMIX constants).
+struct Draw(u64);
+
+impl Draw {
+    fn below(&mut self, n: usize) -> usize {
+        self.0 =
+            self.0.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
+        let high = self.0 >> 33;
+        usize::try_from(high % n.max(1) as u64).unwrap_or(0)
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::square::counted;
+
+    #[test]
+    fn the_worst_triple_is_found() {
+        let mut square = Square::of(counted(4), |_, _| RBig::from_parts(1.into(), 2_u8.into()));
+        square.put(0, 2, Some(RBig::from(3)));
+        square.put(3, 1, None);
+        let scaled = Scaled::of(&square).unwrap();
+        let found = triangles(&scaled);
+        // Of 24 triples, 6 use the drive 4 → 2; 1 → 3 breaks by way of 2 and of 4.
+        assert_eq!((found.examined, found.broken), (18, 2));
+        assert_eq!(found.worst, Some((4, [0, 1, 2])));
+        assert_eq!(scaled.text(4), "2");
+    }
+
+    #[test]
+    fn large_ones_are_drawn_alike_each_time() {
+        let n = EVERY_TRIPLE + 1;
+        let square = Square::of(counted(n), |i, j| RBig::from(u32::from(i == 5 && j != 7) + 1));
+        let scaled = Scaled::of(&square).unwrap();
+        let found = triangles(&scaled);
+        assert!(found.examined > DRAWN * 9 / 10 && found.broken == 0);
+        assert_eq!(triangles(&scaled), found);
+    }
+
+    #[test]
+    fn numbers_too_long_are_not_compared() {
+        let long = |i: usize, _| RBig::from_parts(1.into(), UBig::from(10_u8).pow(36 + i) + 1_u8);
+        assert!(Scaled::of(&Square::of(counted(3), long)).is_none());
+    }
+}

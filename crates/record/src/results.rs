@@ -10,7 +10,7 @@ use serde::{Deserialize, Serialize};
 use crate::scenario::FamilyState;
 
 /// How a relaxation or a search ended.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
 #[serde(rename_all = "lowercase")]
 pub enum Status {
     /// Solved to the end.
@@ -22,6 +22,7 @@ pub enum Status {
     /// A limit stopped it.
     Limit,
     /// It could not be run.
+    #[default]
     Error,
 }
 
@@ -37,6 +38,10 @@ pub struct RivalResult {
     pub rival: String,
     /// The rival's title.
     pub title: String,
+    /// How it ended as a whole: its search, or its relaxation where there was no search.
+    pub status: Status,
+    /// Whether larger is better.
+    pub maximise: bool,
     /// Written rows, not domain lines.
     pub rows: u32,
     /// Columns.
@@ -104,6 +109,9 @@ pub struct RootReport {
     pub rounds: u32,
     /// Rows that separation added.
     pub added: u32,
+    /// The same by family, in the order of the model's families.
+    #[serde(default)]
+    pub added_by_family: Vec<u32>,
     /// Rows of a Farkas ray, by name with multiplier, when infeasible.
     #[serde(default)]
     pub ray: Vec<(String, f64)>,
@@ -172,21 +180,41 @@ pub struct Timing {
 }
 
 /// The digest of results: sixteen hexadecimal digits that two machines can compare. Times,
-/// titles and letters do not count; the order of the results does.
+/// titles, letters and words do not count; the order of the results does.
 #[must_use]
 pub fn digest(results: &[RivalResult]) -> String {
     let mut bytes = Vec::new();
     for result in results {
-        let compared = RivalResult {
+        let mut compared = RivalResult {
             scenario: String::new(),
             instance: String::new(),
             rival: String::new(),
             title: String::new(),
+            left_out: Vec::new(),
             timing: None,
             ..result.clone()
         };
+        for family in &mut compared.families {
+            family.separation.clear();
+        }
         bytes.extend(serde_json::to_vec(&compared).unwrap_or_default());
         bytes.push(b'\n');
     }
     crate::hash::hex(&bytes)
 }
+
+impl std::fmt::Display for ErrorReport {
+    /// The message, then each complaint on a line of its own as `line:column: message (mend)`.
+    fn fmt(&self, formatter: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
+        formatter.write_str(&self.message)?;
+        for complaint in &self.complaints {
+            write!(formatter, "\n{}:{}: {}", complaint.line, complaint.column, complaint.message)?;
+            if !complaint.mend.is_empty() {
+                write!(formatter, " ({})", complaint.mend)?;
+            }
+        }
+        Ok(())
+    }
+}
+
+impl std::error::Error for ErrorReport {}

@@ -15,6 +15,7 @@ fn root() -> RootReport {
         fractional: 22,
         rounds: 0,
         added: 0,
+        added_by_family: vec![0, 3],
         ray: Vec::new(),
         stopped: None,
     }

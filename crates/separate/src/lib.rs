@@ -1,1 +1,37 @@
 //! Recognises families over subsets and separates them.
+//!
+//! A member of a family over subsets is one row for one set S. How far a point x violates it
+//! is a function of S; for all the cut, subtour, forest and closure shapes this function is
+//!
+//! ```text
+//! violation(S) = −( constant + Σ_{i∈S} h_i + Σ_{i∈S, j∉S} a_ij ),    a_ij ≥ 0
+//! ```
+//!
+//! so that its maximum is a minimum cut (Picard, Ratliff 1975), whatever the weights. The
+//! conditions on S are met by branching on the elements that must be in or out, which takes
+//! one cut for each forced element; other shapes are listed where they have no more than
+//! 2^12 members.
+//!
+//! | item | use it for |
+//! |---|---|
+//! | [`Separator`] | one family over subsets: violated members at a point, membership |
+//! | [`RowSeparator`] | an ordinary family on demand: violated written rows |
+
+mod compiled;
+mod components;
+mod conditions;
+mod degree;
+mod flow;
+mod list;
+mod method;
+mod quadratic;
+mod rows;
+mod search;
+mod separator;
+#[cfg(test)]
+mod tests;
+mod tolerance;
+
+pub use method::Exactness;
+pub use rows::{RowSeparator, ViolatedRow};
+pub use separator::{Membership, Progress, Separator, Violated};

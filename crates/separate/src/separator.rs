@@ -1,0 +1,270 @@
+//! The separator of one family over subsets.
+
+use std::collections::BTreeSet;
+
+use model::{LabelId, Model, Number, Row, SubsetFamily, SubsetFamilyId, nearest_f64};
+
+use crate::compiled::Compiled;
+use crate::conditions::Conditions;
+use crate::method::{Choice, Exactness, Method, choose};
+use crate::quadratic::Quadratic;
+use crate::search::{Rules, Search, fractional};
+use crate::tolerance;
+
+/// The most members that a round hands out.
+const MOST_MEMBERS: usize = 100;
+
+/// Whether a slice finished its round.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Progress {
+    /// There is more to do.
+    Working,
+    /// The round is done.
+    Finished,
+}
+
+/// A violated member.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Violated {
+    /// The family.
+    pub family: SubsetFamilyId,
+    /// The set, which the family admits.
+    pub subset: BTreeSet<LabelId>,
+    /// The member, as the family writes it.
+    pub row: Row,
+    /// By how much `x` violates it, in the units of the row; over 10⁻⁶ in a round.
+    pub violation: f64,
+}
+
+/// Whether a point meets every member of a family.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Membership {
+    /// It does.
+    Satisfied,
+    /// It violates this one.
+    Violated(Violated),
+    /// No method can tell.
+    Unknown,
+}
+
+/// Separates one family over subsets of a model.
+#[derive(Debug, Clone)]
+pub struct Separator {
+    id: SubsetFamilyId,
+    family: SubsetFamily,
+    compiled: Compiled,
+    conditions: Conditions,
+    method: Method,
+    exactness: Option<Exactness>,
+    description: String,
+    x: Vec<f64>,
+    work: Work,
+    ticks: u64,
+}
+
+/// Where a round stands.
+#[derive(Debug, Clone)]
+enum Work {
+    Idle,
+    Cuts(Box<Search>),
+    /// The next listed member, and those found violated, by number.
+    List(usize, Vec<(usize, f64)>),
+}
+
+impl Separator {
+    /// Recognises the shape of a family and prepares its method. `O(terms + non-zeros)`
+    /// exact operations; where the members are listed, at most 2^19 steps.
+    #[must_use]
+    pub fn new(model: &Model, id: SubsetFamilyId) -> Self {
+        let family = model.subset_family(id).clone();
+        let compiled = Compiled::new(model, &family);
+        let conditions = Conditions::new(&family);
+        let Choice { method, exactness, description } =
+            choose(model, &family, &compiled, &conditions);
+        Self {
+            id,
+            family,
+            compiled,
+            conditions,
+            method,
+            exactness,
+            description,
+            x: Vec::new(),
+            work: Work::Idle,
+            ticks: 0,
+        }
+    }
+
+    /// The method in words, e.g. "exact minimum cut from Ash to each other element".
+    #[must_use]
+    pub fn description(&self) -> &str {
+        &self.description
+    }
+
+    /// How the bound of the family is labelled; `None` when there is no method.
+    #[must_use]
+    pub fn exactness(&self) -> Option<Exactness> {
+        self.exactness
+    }
+
+    /// Begins a round at `x`, one value a column. Without a method the round is empty.
+    pub fn start(&mut self, x: &[f64]) {
+        self.x = x.to_vec();
+        self.work = match &self.method {
+            Method::Cut { limit } => {
+                let rules = fractional(self.compiled.scale, *limit);
+                Work::Cuts(Box::new(self.search(x, rules)))
+            }
+            Method::List(_) => Work::List(0, Vec::new()),
+            Method::None => Work::Idle,
+        };
+    }
+
+    fn search(&self, x: &[f64], rules: Rules) -> Search {
+        let quadratic = Quadratic::new(&self.compiled, x, rules.residual);
+        Search::new(quadratic, &self.conditions, rules)
+    }
+
+    /// Works until `ticks` arcs or terms have been looked at; a cut is never left halfway.
+    pub fn advance(&mut self, ticks: u64) -> Progress {
+        let end = self.ticks.saturating_add(ticks);
+        while self.ticks < end {
+            match &mut self.work {
+                Work::Idle => return Progress::Finished,
+                Work::Cuts(search) if search.is_finished() => return Progress::Finished,
+                Work::Cuts(search) => self.ticks += search.step(&self.conditions),
+                Work::List(next, found) => {
+                    let Method::List(sets) = &self.method else { return Progress::Finished };
+                    let Some(set) = sets.get(*next) else { return Progress::Finished };
+                    let set = flags(self.compiled.size, set);
+                    let violation = self.compiled.violation(&set, &self.x);
+                    if violation > tolerance::VIOLATION * self.compiled.scale {
+                        found.push((*next, violation));
+                    }
+                    *next += 1;
+                    self.ticks += 1 + u64::try_from(self.compiled.terms.len()).unwrap_or(u64::MAX);
+                }
+            }
+        }
+        Progress::Working
+    }
+
+    /// Arcs and terms looked at since the separator was made: the same for every slicing.
+    #[must_use]
+    pub fn ticks(&self) -> u64 {
+        self.ticks
+    }
+
+    /// The violated members of the round, no two the same: the most violated first, equal
+    /// ones by set; at most 100.
+    pub fn take(&mut self) -> Vec<Violated> {
+        let sets: Vec<Vec<usize>> = match std::mem::replace(&mut self.work, Work::Idle) {
+            Work::Idle => Vec::new(),
+            Work::Cuts(search) => ranked(search.found.into_iter().collect()),
+            Work::List(_, found) => {
+                let Method::List(sets) = &self.method else { return Vec::new() };
+                let found = found.into_iter().filter_map(|(k, v)| Some((sets.get(k)?.clone(), v)));
+                ranked(found.collect())
+            }
+        };
+        let mut members: Vec<Violated> =
+            sets.iter().map(|set| self.violated(set, &self.x)).collect();
+        members.retain(|member| member.violation > tolerance::VIOLATION);
+        members.sort_by(|a, b| {
+            b.violation.total_cmp(&a.violation).then_with(|| a.subset.cmp(&b.subset))
+        });
+        members
+    }
+
+    fn violated(&self, places: &[usize], x: &[f64]) -> Violated {
+        let subset: BTreeSet<LabelId> = places.iter().map(|&i| self.family.ground[i]).collect();
+        let row = self.family.member(&subset);
+        let activity = row.activity(x);
+        let under = row.lower.as_ref().map(|lower| nearest_f64(lower) - activity);
+        let over = row.upper.as_ref().map(|upper| activity - nearest_f64(upper));
+        let violation = match (under, over) {
+            (Some(under), Some(over)) => {
+                if under > over {
+                    under
+                } else {
+                    over
+                }
+            }
+            (under, over) => under.or(over).unwrap_or(0.0),
+        };
+        Violated { family: self.id, subset, row, violation }
+    }
+
+    /// Whether `x`, whose integer columns are rounded, meets every member.
+    ///
+    /// Exact where the columns of the family are integer and its method is exact: members are
+    /// evaluated in rationals. A member over a column that is not integer (or a
+    /// family whose common denominator is over 2^40) is violated when it is by over 10⁻⁶.
+    /// [`Membership::Unknown`] where there is no method, or a heuristic one gave up.
+    /// Costs a whole round at once.
+    #[must_use]
+    pub fn membership(&self, x: &[f64]) -> Membership {
+        let x = self.compiled.rounded(x);
+        match &self.method {
+            Method::None => Membership::Unknown,
+            Method::List(sets) => {
+                let mut violated = sets.iter().filter_map(|set| self.confirmed(set, &x));
+                violated.next().map_or(Membership::Satisfied, Membership::Violated)
+            }
+            Method::Cut { limit } => self.membership_by_cuts(&x, *limit),
+        }
+    }
+
+    fn membership_by_cuts(&self, x: &[f64], limit: Option<u32>) -> Membership {
+        let mut rules = fractional(self.compiled.scale, limit);
+        rules.first_only = true;
+        if self.compiled.whole {
+            rules.threshold = tolerance::HALF;
+            rules.residual = tolerance::HALF;
+            rules.balance = 0.0;
+        }
+        let mut search = self.search(x, rules);
+        while !search.is_finished() {
+            search.step(&self.conditions);
+        }
+        let mut violated = search.found.keys().filter_map(|set| self.confirmed(set, x));
+        match violated.next() {
+            Some(member) => Membership::Violated(member),
+            None if search.cut_short => Membership::Unknown,
+            None => Membership::Satisfied,
+        }
+    }
+
+    /// The member for a set if `x` violates it: exactly, or by the tolerance where a column of
+    /// it is not integer.
+    fn confirmed(&self, places: &[usize], x: &[f64]) -> Option<Violated> {
+        let member = self.violated(places, x);
+        if member.violation.abs() > tolerance::VIOLATION {
+            return (member.violation > 0.0).then_some(member);
+        }
+        let integer = |column: model::ColumnId| self.compiled.is_integer(column.index());
+        if !member.row.entries.iter().all(|(column, _)| integer(*column)) {
+            return None;
+        }
+        let mut activity = Number::ZERO;
+        for (column, a) in &member.row.entries {
+            activity += a * Number::try_from(x[column.index()]).ok()?;
+        }
+        let under = member.row.lower.as_ref().is_some_and(|lower| activity < *lower);
+        let over = member.row.upper.as_ref().is_some_and(|upper| activity > *upper);
+        (under || over).then_some(member)
+    }
+}
+
+/// The sets by falling violation, then by set, cut to the most that a round hands out.
+fn ranked(mut found: Vec<(Vec<usize>, f64)>) -> Vec<Vec<usize>> {
+    found.sort_by(|a, b| b.1.total_cmp(&a.1).then_with(|| a.0.cmp(&b.0)));
+    found.truncate(MOST_MEMBERS);
+    found.into_iter().map(|(set, _)| set).collect()
+}
+
+fn flags(size: usize, places: &[usize]) -> Vec<bool> {
+    let mut set = vec![false; size];
+    places.iter().for_each(|&place| set[place] = true);
+    set
+}

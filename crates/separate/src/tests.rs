@@ -1,0 +1,6 @@
+//! Tests through the public face, against enumeration of all subsets.
+
+mod build;
+mod fractional;
+mod integral;
+mod others;

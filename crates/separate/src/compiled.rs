@@ -20,6 +20,8 @@ pub(crate) enum Kind {
 /// One term; its coefficient is scaled and has the sign that violation gives it.
 #[derive(Debug, Clone, Copy)]
 pub(crate) struct Term {
+    /// Its place among the terms of the family.
+    pub(crate) place: usize,
     pub(crate) column: usize,
     pub(crate) coefficient: f64,
     pub(crate) kind: Kind,
@@ -54,9 +56,10 @@ impl Compiled {
         let sign = if family.relation == Relation::AtLeast { -1 } else { 1 };
         let factor = &scale * Number::from(sign);
         let value = |number: &Number| nearest_f64(&(number * &factor));
-        let terms = family.terms.iter().filter_map(|term| {
+        let terms = family.terms.iter().enumerate().filter_map(|(place, term)| {
             let kind = resolved(term.scope, &places)?;
-            Some(Term { column: term.column.index(), coefficient: value(&term.coefficient), kind })
+            let (column, coefficient) = (term.column.index(), value(&term.coefficient));
+            Some(Term { place, column, coefficient, kind })
         });
         let mut compiled = Self {
             size: family.ground.len(),

@@ -23,6 +23,7 @@ mod conditions;
 mod degree;
 mod flow;
 mod list;
+mod member;
 mod method;
 mod quadratic;
 mod rows;

@@ -6,7 +6,7 @@
 //! ranking method of Lawler 1972. For 1 ≤ |S| ≤ n − 1 that takes about 2n cuts.
 //!
 //! Where a set and its complement are equally violated only the sets that avoid the first
-//! element are searched, and a set that is not admitted gives way to its complement.
+//! element are searched, and what is recorded is the smaller side that is admitted.
 
 use std::collections::BTreeMap;
 
@@ -131,31 +131,28 @@ impl Search {
         self.conditions.failure(set)
     }
 
-    /// Records a set that meets the conditions in force, or its complement.
+    /// Records a set that meets the conditions in force.
     fn take(&mut self, set: &[bool], family: &Conditions) -> bool {
-        if self.failure(set).is_some() {
-            return false;
-        }
-        if self.record(set, family) {
-            return true;
-        }
-        let complement: Vec<bool> = set.iter().map(|inside| !inside).collect();
-        self.balanced && self.record(&complement, family)
+        self.failure(set).is_none() && self.record(set, family)
     }
 
-    /// Records a set if it gives a member and is violated.
+    /// Records a set if it gives a member and is violated; in balance the smaller of it and
+    /// its complement that does (its row has fewer entries), and not both.
     fn record(&mut self, set: &[bool], family: &Conditions) -> bool {
-        let violation = self.quadratic.violation(set);
-        if violation <= self.rules.threshold || !family.admits(set) {
+        if self.quadratic.violation(set) <= self.rules.threshold {
             return false;
         }
-        let places: Vec<usize> = (0..set.len()).filter(|&i| set[i]).collect();
-        // In balance the side that was searched avoids the first element.
-        let turned = self.balanced && set[0];
-        for (covered, &inside) in self.covered.iter_mut().zip(set) {
-            if inside == turned { covered.outside = true } else { covered.inside = true }
+        let mut sides = vec![set.to_vec()];
+        if self.balanced {
+            sides.push(set.iter().map(|inside| !inside).collect());
+            sides.sort_by_key(|side| (size(side), side[0]));
         }
-        self.found.insert(places, violation);
+        let Some(side) = sides.into_iter().find(|side| family.admits(side)) else { return false };
+        for (covered, &inside) in self.covered.iter_mut().zip(set) {
+            if inside { covered.inside = true } else { covered.outside = true }
+        }
+        let places = (0..side.len()).filter(|&i| side[i]).collect();
+        self.found.insert(places, self.quadratic.violation(&side));
         true
     }
 
@@ -168,6 +165,10 @@ impl Search {
             None => false,
         }
     }
+}
+
+fn size(set: &[bool]) -> usize {
+    set.iter().filter(|inside| **inside).count()
 }
 
 /// Whether it is enough to search the sets that avoid the first element. Single elements

@@ -9,7 +9,7 @@ use crate::conditions::Conditions;
 use crate::method::{Choice, Exactness, Method, choose};
 use crate::quadratic::Quadratic;
 use crate::search::{Rules, Search, fractional};
-use crate::tolerance;
+use crate::{member, tolerance};
 
 /// The most members that a round hands out.
 const MOST_MEMBERS: usize = 100;
@@ -177,8 +177,9 @@ impl Separator {
     }
 
     fn violated(&self, places: &[usize], x: &[f64]) -> Violated {
-        let subset: BTreeSet<LabelId> = places.iter().map(|&i| self.family.ground[i]).collect();
-        let row = self.family.member(&subset);
+        let set = flags(self.compiled.size, places);
+        let subset = self.conditions.labels(&set);
+        let row = member::row(&self.family, &self.compiled, &set);
         let activity = row.activity(x);
         let under = row.lower.as_ref().map(|lower| nearest_f64(lower) - activity);
         let over = row.upper.as_ref().map(|upper| activity - nearest_f64(upper));

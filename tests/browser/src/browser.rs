@@ -1,0 +1,208 @@
+//! Finding, typing, waiting.
+//!
+//! Elements are found as assistive technology finds them: by role and accessible name, in the
+//! browser's own accessibility tree.
+
+use std::time::Duration;
+
+use fantoccini::elements::Element;
+use fantoccini::{Client, Locator};
+use serde_json::{Value, json};
+use tokio::time::{Instant, sleep};
+
+use crate::devtools::Post;
+use crate::{Outcome, fault};
+
+/// How long to wait for what should come soon.
+pub const SOON: Duration = Duration::from_secs(15);
+
+const BETWEEN_LOOKS: Duration = Duration::from_millis(50);
+const MARK: &str = "data-found-by-test";
+
+/// A browser with the page open.
+#[derive(Debug)]
+pub struct Browser {
+    client: Client,
+}
+
+impl Browser {
+    pub(crate) fn new(client: Client) -> Self {
+        Self { client }
+    }
+
+    pub(crate) async fn close(self) -> Outcome<()> {
+        Ok(self.client.close().await?)
+    }
+
+    /// Waits until the boot script has opened the page.
+    pub(crate) async fn booted(&self) -> Outcome<()> {
+        self.until("the page opens", SOON, async || {
+            let state = self.script("return document.documentElement.dataset.boot ?? ''").await?;
+            if state == "failed" {
+                return Err(fault(format!("the page did not open: {}", self.text().await?)));
+            }
+            Ok(state == "done")
+        })
+        .await
+    }
+
+    /// Runs a script and returns what it returns.
+    ///
+    /// # Errors
+    /// What the script throws.
+    pub async fn script(&self, script: &str) -> Outcome<Value> {
+        self.script_with(script, Vec::new()).await
+    }
+
+    /// Runs a script with arguments, its `arguments`.
+    ///
+    /// # Errors
+    /// What the script throws.
+    pub async fn script_with(&self, script: &str, arguments: Vec<Value>) -> Outcome<Value> {
+        Ok(self.client.execute(script, arguments).await?)
+    }
+
+    /// Runs a script that hands its result to its last argument, a function.
+    ///
+    /// # Errors
+    /// What the script throws, or that it takes longer than half a minute.
+    pub async fn script_async(&self, script: &str, arguments: Vec<Value>) -> Outcome<Value> {
+        Ok(self.client.execute_async(script, arguments).await?)
+    }
+
+    /// A command of the browser's own protocol.
+    pub(crate) async fn protocol(&self, method: &str, parameters: Value) -> Outcome<Value> {
+        Ok(self.client.issue_cmd(Post::protocol(method, &parameters)).await?)
+    }
+
+    pub(crate) async fn picture(&self) -> Outcome<Vec<u8>> {
+        Ok(self.client.screenshot().await?)
+    }
+
+    /// The page's text as it is seen.
+    ///
+    /// # Errors
+    /// Those of the driver.
+    pub async fn text(&self) -> Outcome<String> {
+        let text = self.script("return document.body.innerText").await?;
+        Ok(text.as_str().unwrap_or_default().to_owned())
+    }
+
+    /// Warnings and errors that the console has shown since it was last asked.
+    ///
+    /// # Errors
+    /// Those of the driver.
+    pub async fn console(&self) -> Outcome<Vec<String>> {
+        let entries = self.client.issue_cmd(Post::console()).await?;
+        let bad = |entry: &&Value| entry["level"] == "SEVERE" || entry["level"] == "WARNING";
+        let entries = entries.as_array().map(Vec::as_slice).unwrap_or_default();
+        Ok(entries.iter().filter(bad).map(|entry| entry["message"].to_string()).collect())
+    }
+
+    /// Waits until `holds`.
+    ///
+    /// # Errors
+    /// That it did not within the limit, or what `holds` meets.
+    pub async fn until(
+        &self,
+        what: &str,
+        limit: Duration,
+        holds: impl AsyncFn() -> Outcome<bool>,
+    ) -> Outcome<()> {
+        let begun = Instant::now();
+        while !holds().await? {
+            if begun.elapsed() > limit {
+                let seen = self.text().await?;
+                return Err(fault(format!("after {limit:?} still not: {what}. Seen:\n{seen}")));
+            }
+            sleep(BETWEEN_LOOKS).await;
+        }
+        Ok(())
+    }
+
+    /// Waits until the page shows a text.
+    ///
+    /// # Errors
+    /// That it does not soon.
+    pub async fn shows(&self, text: &str) -> Outcome<()> {
+        let what = format!("the page shows {text:?}");
+        self.until(&what, SOON, async || Ok(self.text().await?.contains(text))).await
+    }
+
+    /// The element with this role whose accessible name holds `name`; waits for it. The first in
+    /// the order of the document if there are more.
+    ///
+    /// # Errors
+    /// That there is none soon.
+    pub async fn find(&self, role: &str, name: &str) -> Outcome<Element> {
+        let begun = Instant::now();
+        loop {
+            if let Some(first) = self.find_all(role, name).await?.into_iter().next() {
+                return Ok(first);
+            }
+            if begun.elapsed() > SOON {
+                let seen = self.text().await?;
+                return Err(fault(format!("there is no {role} named {name:?}. Seen:\n{seen}")));
+            }
+            sleep(BETWEEN_LOOKS).await;
+        }
+    }
+
+    /// All elements with this role whose accessible names hold `name`, as they are now.
+    ///
+    /// # Errors
+    /// Those of the driver.
+    pub async fn find_all(&self, role: &str, name: &str) -> Outcome<Vec<Element>> {
+        let document = self.protocol("DOM.getDocument", json!({ "depth": 0 })).await?;
+        let query = json!({ "nodeId": document["root"]["nodeId"], "role": role });
+        let found = self.protocol("Accessibility.queryAXTree", query).await?;
+        let named = |node: &&Value| {
+            node["ignored"] != true
+                && node["name"]["value"].as_str().unwrap_or_default().contains(name)
+        };
+        let nodes = found["nodes"].as_array().map(Vec::as_slice).unwrap_or_default();
+        let ids: Vec<&Value> =
+            nodes.iter().filter(named).map(|node| &node["backendDOMNodeId"]).collect();
+        self.mark(&json!(ids)).await?;
+        Ok(self.client.find_all(Locator::Css(&format!("[{MARK}]"))).await?)
+    }
+
+    /// Marks these elements, and no other, with an attribute by which WebDriver can find them.
+    async fn mark(&self, ids: &Value) -> Outcome<()> {
+        self.script_with(
+            "for (const one of document.querySelectorAll(`[${arguments[0]}]`)) \
+             one.removeAttribute(arguments[0])",
+            vec![json!(MARK)],
+        )
+        .await?;
+        let pushed = json!({ "backendNodeIds": ids });
+        let pushed = self.protocol("DOM.pushNodesByBackendIdsToFrontend", pushed).await?;
+        for node in pushed["nodeIds"].as_array().map(Vec::as_slice).unwrap_or_default() {
+            let marked = json!({ "nodeId": node, "name": MARK, "value": "" });
+            self.protocol("DOM.setAttributeValue", marked).await?;
+        }
+        Ok(())
+    }
+
+    /// The first element of a CSS selector; waits for it.
+    ///
+    /// # Errors
+    /// That there is none soon.
+    pub async fn select(&self, selector: &str) -> Outcome<Element> {
+        let wait = self.client.wait().at_most(SOON).every(BETWEEN_LOOKS);
+        wait.for_element(Locator::Css(selector))
+            .await
+            .map_err(|error| fault(format!("nothing matches {selector}: {error}")))
+    }
+
+    /// Puts a text into a field as a paste does: at once, with the event that pages hear.
+    ///
+    /// # Errors
+    /// Those of the driver.
+    pub async fn paste(&self, field: &Element, text: &str) -> Outcome<()> {
+        let script = "const [field, text] = arguments; field.focus(); field.select(); \
+                      document.execCommand('insertText', false, text);";
+        self.script_with(script, vec![serde_json::to_value(field)?, json!(text)]).await?;
+        Ok(())
+    }
+}

@@ -47,7 +47,7 @@ pub struct Solution {
 /// which is proof enough.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Ray {
-    /// y, one a row; the largest is of size about 1.
+    /// y, one a row: small whole numbers where a factor up to 64 makes them so, else at most 1 in size.
     pub multipliers: Vec<f64>,
 }
 

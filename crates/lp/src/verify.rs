@@ -8,6 +8,9 @@ use crate::outcome::{Ray, Solution};
 use crate::state::{Core, excess};
 use crate::tolerances::{VERIFY_DUAL, VERIFY_FARKAS, VERIFY_GAP, VERIFY_RAY, VERIFY_ROW};
 
+/// Largest factor tried to make a ray whole: exact checks lose nothing then.
+const WHOLE_FACTOR: u32 = 64;
+
 /// A dual bound: its value and the sum of its terms' sizes.
 #[derive(Clone, Copy, Debug)]
 struct DualBound {
@@ -81,7 +84,7 @@ impl Core {
         self.proves_infeasible(&multipliers).then_some(Ray { multipliers })
     }
 
-    /// Drops what is noise and what would need a side that is missing.
+    /// Drops what is noise and what would need a side that is missing; makes the rest whole where a small factor does.
     fn tidy_ray(&self, multipliers: &mut [f64]) {
         let n = self.columns();
         for (i, y) in multipliers.iter_mut().enumerate() {
@@ -92,6 +95,14 @@ impl Core {
             };
             if y.abs() < VERIFY_RAY * 1e-3 || (missing && y.abs() < VERIFY_RAY) {
                 *y = 0.0;
+            }
+        }
+        let is_whole = |factor: f64| {
+            multipliers.iter().all(|y| (y * factor - (y * factor).round()).abs() <= VERIFY_RAY)
+        };
+        if let Some(factor) = (1..=WHOLE_FACTOR).map(f64::from).find(|&factor| is_whole(factor)) {
+            for y in multipliers.iter_mut() {
+                *y = (*y * factor).round();
             }
         }
     }

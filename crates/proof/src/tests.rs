@@ -1,3 +1,5 @@
 //! Tests through the public face.
 
 mod by_hand;
+mod certified;
+mod vertices;

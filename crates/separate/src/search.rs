@@ -12,7 +12,7 @@ use std::collections::BTreeMap;
 
 use crate::conditions::{Conditions, Failure, Fixed, Part};
 use crate::method::halves;
-use crate::quadratic::Quadratic;
+use crate::quadratic::{Minimum, Quadratic};
 use crate::{components, tolerance};
 
 /// The most sets that a round keeps.
@@ -114,10 +114,7 @@ impl Search {
         if self.quadratic.violation(&minimum.smallest) <= self.rules.threshold {
             return minimum.ticks;
         }
-        let mut recorded = false;
-        for set in [&minimum.smallest, &minimum.largest] {
-            recorded |= self.take(set, family);
-        }
+        let recorded = self.take_both(&minimum, family);
         if recorded && (self.rules.first_only || self.found.len() >= MOST_SETS) {
             self.open.clear();
         } else if let (false, Some(failure)) = (recorded, self.failure(&minimum.smallest)) {
@@ -131,9 +128,22 @@ impl Search {
         self.conditions.failure(set)
     }
 
-    /// Records a set that meets the conditions in force.
-    fn take(&mut self, set: &[bool], family: &Conditions) -> bool {
-        self.failure(set).is_none() && self.record(set, family)
+    /// Records the smallest and the largest most violated set, as far as they meet the
+    /// conditions in force. Elements in the smallest, and those out of the largest, count as
+    /// covered.
+    fn take_both(&mut self, minimum: &Minimum, family: &Conditions) -> bool {
+        let mut taken = Vec::new();
+        for set in [&minimum.smallest, &minimum.largest] {
+            if self.failure(set).is_none() && self.record(set, family) {
+                taken.push(set);
+            }
+        }
+        let (Some(smallest), Some(largest)) = (taken.first(), taken.last()) else { return false };
+        for (i, covered) in self.covered.iter_mut().enumerate() {
+            covered.inside |= smallest[i];
+            covered.outside |= !largest[i];
+        }
+        true
     }
 
     /// Records a set if it gives a member and is violated; in balance the smaller of it and
@@ -148,9 +158,6 @@ impl Search {
             sides.sort_by_key(|side| (size(side), side[0]));
         }
         let Some(side) = sides.into_iter().find(|side| family.admits(side)) else { return false };
-        for (covered, &inside) in self.covered.iter_mut().zip(set) {
-            if inside { covered.inside = true } else { covered.outside = true }
-        }
         let places = (0..side.len()).filter(|&i| side[i]).collect();
         self.found.insert(places, self.quadratic.violation(&side));
         true

@@ -1,0 +1,201 @@
+//! Tiny programs whose optima are found by trying every basis in rationals.
+
+use model::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
+use proptest::prelude::*;
+
+use crate::{Bounds, ExactRows, bound, infeasible};
+
+/// min c'x, L ≤ Ax ≤ U, l ≤ x ≤ u in small whole numbers; sides may be missing.
+#[derive(Debug, Clone)]
+struct Program {
+    costs: Vec<i64>,
+    bounds: Vec<(i64, Option<i64>)>,
+    rows: Vec<(Vec<i64>, Option<i64>, Option<i64>)>,
+}
+
+fn program() -> impl Strategy<Value = Program> {
+    let columns = 3_usize;
+    let side = prop_oneof![Just(None), (-6_i64..12).prop_map(Some)];
+    let row = (prop::collection::vec(-4_i64..5, columns), side.clone(), 0_i64..8).prop_map(
+        |(entries, lower, width)| match (lower, width) {
+            (None, width) => (entries, None, Some(width)),
+            (Some(lower), 7) => (entries, Some(lower), None),
+            (Some(lower), width) => (entries, Some(lower), Some(lower + width)),
+        },
+    );
+    let bound = (-3_i64..2, prop_oneof![Just(None), (2_i64..9).prop_map(Some)]);
+    (
+        prop::collection::vec(-5_i64..9, columns),
+        prop::collection::vec(bound, columns),
+        prop::collection::vec(row, 1..4),
+    )
+        .prop_map(|(costs, bounds, rows)| Program { costs, bounds, rows })
+}
+
+impl Program {
+    fn model(&self, sense: Sense) -> Model {
+        let mut b = ModelBuilder::new("random", sense);
+        let sign = if sense == Sense::Minimise { 1 } else { -1 };
+        for (cost, (lower, upper)) in self.costs.iter().zip(&self.bounds) {
+            let spec = ColumnSpec {
+                lower: Some(Number::from(*lower)),
+                upper: upper.map(Number::from),
+                cost: Number::from(sign * cost),
+                integer: false,
+            };
+            b.column(&[], &spec).unwrap();
+        }
+        b.family("rows", FamilyState::In, false);
+        for (entries, lower, upper) in &self.rows {
+            let entries = entries.iter().enumerate();
+            let entries = entries.map(|(j, a)| (ColumnId::from_index(j), Number::from(*a)));
+            let (lower, upper) = (lower.map(Number::from), upper.map(Number::from));
+            b.row(&[], Row { entries: entries.collect(), lower, upper }).unwrap();
+        }
+        b.build()
+    }
+
+    /// Every hyperplane `a'x = b`: sides of rows (with their row) and bounds.
+    fn planes(&self) -> Vec<(Vec<i64>, i64, Option<usize>)> {
+        let mut planes = Vec::new();
+        for (index, (entries, lower, upper)) in self.rows.iter().enumerate() {
+            for side in lower.iter().chain(upper) {
+                planes.push((entries.clone(), *side, Some(index)));
+            }
+        }
+        for (column, (lower, upper)) in self.bounds.iter().enumerate() {
+            let unit: Vec<i64> = (0..self.costs.len()).map(|j| i64::from(j == column)).collect();
+            planes
+                .extend([Some(*lower), *upper].iter().flatten().map(|b| (unit.clone(), *b, None)));
+        }
+        planes
+    }
+
+    fn holds(&self, x: &[Number]) -> bool {
+        let inside = |value: &Number, lower: Option<i64>, upper: Option<i64>| {
+            lower.is_none_or(|l| *value >= Number::from(l))
+                && upper.is_none_or(|u| *value <= Number::from(u))
+        };
+        let columns = self.bounds.iter().zip(x).all(|((l, u), x)| inside(x, Some(*l), *u));
+        columns && self.rows.iter().all(|(a, l, u)| inside(&product(a, x), *l, *u))
+    }
+
+    /// All feasible vertices, each with the multipliers of its basis.
+    fn vertices(&self) -> Vec<(Vec<Number>, Vec<Number>)> {
+        let planes = self.planes();
+        let mut out = Vec::new();
+        for i in 0..planes.len() {
+            for j in 0..i {
+                for k in 0..j {
+                    let basis = [&planes[i], &planes[j], &planes[k]];
+                    let matrix: Vec<Vec<i64>> = basis.iter().map(|plane| plane.0.clone()).collect();
+                    let right: Vec<i64> = basis.iter().map(|plane| plane.1).collect();
+                    let Some(x) = solved(&matrix, &right) else { continue };
+                    if !self.holds(&x) {
+                        continue;
+                    }
+                    let transposed: Vec<Vec<i64>> =
+                        (0..3).map(|c| matrix.iter().map(|row| row[c]).collect()).collect();
+                    let weights = solved(&transposed, &self.costs).unwrap();
+                    let mut y = vec![Number::ZERO; self.rows.len()];
+                    for (plane, weight) in basis.iter().zip(weights) {
+                        if let Some(row) = plane.2 {
+                            y[row] += weight;
+                        }
+                    }
+                    out.push((x, y));
+                }
+            }
+        }
+        out
+    }
+}
+
+fn product(a: &[i64], x: &[Number]) -> Number {
+    a.iter().zip(x).fold(Number::ZERO, |sum, (a, x)| sum + Number::from(*a) * x)
+}
+
+/// The solution of a 3 by 3 system by Cramer's rule; `None` when it is singular.
+fn solved(matrix: &[Vec<i64>], right: &[i64]) -> Option<Vec<Number>> {
+    let determinant = |m: &[Vec<i64>]| {
+        let minor = |a: usize, b: usize| m[1][a] * m[2][b] - m[1][b] * m[2][a];
+        m[0][0] * minor(1, 2) - m[0][1] * minor(0, 2) + m[0][2] * minor(0, 1)
+    };
+    let whole = determinant(matrix);
+    if whole == 0 {
+        return None;
+    }
+    let replaced = (0..3).map(|column| {
+        let mut m = matrix.to_vec();
+        (0..3).for_each(|row| m[row][column] = right[row]);
+        Number::from(determinant(&m)) / Number::from(whole)
+    });
+    Some(replaced.collect())
+}
+
+fn bounds(model: &Model) -> Vec<Bounds> {
+    let exact = |id| model.numbers().exact(id).clone();
+    model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact))).collect()
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig::with_cases(400))]
+
+    /// Whatever the multipliers: no bound is over the value of any point, no ray proves that
+    /// a program with a point has none.
+    #[test]
+    fn nothing_false_is_proved(
+        program in program(),
+        y in prop::collection::vec(prop_oneof![-4.0..4.0_f64, Just(1.0), Just(-1.0), Just(0.0)], 3),
+    ) {
+        let vertices = program.vertices();
+        let y = &y[..program.rows.len()];
+        let least = vertices.iter().map(|(x, _)| product(&program.costs, x)).min();
+        if let Some(least) = least {
+            let model = program.model(Sense::Minimise);
+            let rows = ExactRows::new(&model);
+            let proved = bound(&rows, &bounds(&model), y);
+            prop_assert!(proved.is_none_or(|proved| proved <= least));
+            prop_assert!(!infeasible(&rows, &bounds(&model), y));
+            let turned = program.model(Sense::Maximise);
+            let proved = bound(&ExactRows::new(&turned), &bounds(&turned), y);
+            prop_assert!(proved.is_none_or(|proved| proved >= -least));
+        }
+    }
+
+    /// The multipliers of an optimal basis, as floats and slightly off, prove the
+    /// optimum exactly: its fractions are simple.
+    #[test]
+    fn optimal_multipliers_prove_the_optimum(program in program(), noise in -1e-11..1e-11_f64) {
+        let model = program.model(Sense::Minimise);
+        let rows = ExactRows::new(&model);
+        let all = bounds(&model);
+        let mut optimal = 0;
+        for (x, y) in program.vertices() {
+            let value = product(&program.costs, &x);
+            let y: Vec<f64> = y.iter().map(|y| model::nearest_f64(y) + noise).collect();
+            let proved = bound(&rows, &all, &y);
+            optimal += u32::from(proved.as_ref() == Some(&value));
+            prop_assert!(proved.is_none_or(|proved| proved <= value));
+        }
+        let bounded = program.bounds.iter().all(|(_, upper)| upper.is_some());
+        prop_assert!(!bounded || optimal > 0 || program.vertices().is_empty());
+    }
+}
+
+/// Programs without a point exist among those drawn, and small changes of a side give
+/// rays that prove it: x + y + z ≥ 7 within 0 ≤ x, y, z ≤ 2.
+#[test]
+fn a_box_that_is_too_small() {
+    let mut program = Program {
+        costs: vec![1, 1, 1],
+        bounds: vec![(0, Some(2)); 3],
+        rows: vec![(vec![1, 1, 1], Some(7), None)],
+    };
+    let model = program.model(Sense::Minimise);
+    assert!(program.vertices().is_empty());
+    assert!(infeasible(&ExactRows::new(&model), &bounds(&model), &[1.0]));
+    program.rows[0].1 = Some(6);
+    let model = program.model(Sense::Minimise);
+    assert!(!infeasible(&ExactRows::new(&model), &bounds(&model), &[1.0]));
+}

@@ -1,1 +1,19 @@
-//! Tree layout, axes and figures.
+//! What the page draws, worked out without a page: numbers as text, axes, tree layout, maps.
+//!
+//! | module | holds |
+//! |---|---|
+//! | [`number`] | numbers as a reader wants them |
+//! | [`axis`] | round ticks and the shared scale |
+//! | [`layout`] | places of tree nodes, stable while the tree grows |
+//! | [`density`] | a large tree as counts by cell |
+//! | [`map`] | places fitted to a frame, arcs, hulls |
+//! | [`labels`] | names beside their stops without collisions |
+//!
+//! Everything is pure and the same on every machine.
+
+pub mod axis;
+pub mod density;
+pub mod labels;
+pub mod layout;
+pub mod map;
+pub mod number;

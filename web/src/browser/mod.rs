@@ -1,0 +1,7 @@
+//! The thin layer over the browser: workers, frames, sizes, colours, the lanes' runs.
+
+pub(crate) mod frame;
+pub(crate) mod run;
+pub(crate) mod session;
+pub(crate) mod size;
+pub(crate) mod worker;

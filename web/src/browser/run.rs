@@ -1,0 +1,140 @@
+//! One lane's worker and the tree that grows from its replies. A worker that fails, or does not
+//! answer to Stop in time, is replaced, and the new one is led to the same node count.
+
+use std::cell::RefCell;
+use std::collections::VecDeque;
+
+use gloo_timers::callback::Timeout;
+use record::message::{Envelope, LaneJob, Reply, Request, RunNumber};
+
+use crate::browser::worker::WorkerHandle;
+use crate::state::board::LaneAction;
+use crate::state::lane::Phase;
+use crate::state::pointer::Shared;
+use crate::state::tree::Tree;
+
+/// Batches applied before one frame, at most; more only when so many wait that they would pile up.
+const BATCHES: usize = 1;
+const PILE: usize = 20;
+
+/// A tree that the lane's run grows and its drawing reads.
+pub(crate) type TreeCell = Shared<RefCell<Tree>>;
+
+/// A lane's run.
+#[derive(Debug)]
+pub(crate) struct LaneRun {
+    /// The worker; `None` when it could not be started.
+    pub(crate) worker: Option<WorkerHandle>,
+    /// What it works on.
+    pub(crate) job: LaneJob,
+    /// The tree so far.
+    pub(crate) tree: TreeCell,
+    /// Replies not yet taken in.
+    pub(crate) inbox: VecDeque<Envelope>,
+    /// Runs out when Stop is not answered.
+    pub(crate) watchdog: Option<Timeout>,
+    /// Nodes to search again after the worker was replaced.
+    pub(crate) replay: Option<u32>,
+    /// Whether the search shall begin as soon as the root is solved.
+    pub(crate) run_at_root: bool,
+    /// Workers lost since a person last asked for something.
+    pub(crate) losses: u32,
+}
+
+impl LaneRun {
+    /// A run of a job that has not begun.
+    pub(crate) fn new(job: LaneJob, worker: Option<WorkerHandle>) -> Self {
+        Self {
+            worker,
+            job,
+            tree: Shared::new(RefCell::default()),
+            inbox: VecDeque::new(),
+            watchdog: None,
+            replay: None,
+            run_at_root: false,
+            losses: 0,
+        }
+    }
+
+    /// Sends a request; without a worker there is nobody to send it to.
+    pub(crate) fn post(&self, request: &Request) {
+        if let Some(worker) = &self.worker {
+            // A worker that takes no message tells so by its error event.
+            let _ = worker.post(request);
+        }
+    }
+
+    /// Loads the job as a new run.
+    pub(crate) fn load(&mut self) -> LaneAction {
+        self.job.run = RunNumber(self.job.run.0 + 1);
+        self.tree = Shared::new(RefCell::default());
+        self.inbox.clear();
+        self.watchdog = None;
+        self.post(&Request::Load(Box::new(self.job.clone())));
+        LaneAction::Load
+    }
+
+    /// Keeps a reply of this run for the next frame; those of an older run are dropped.
+    pub(crate) fn keep(&mut self, envelope: Envelope) {
+        if envelope.run == self.job.run {
+            self.inbox.push_back(envelope);
+        }
+    }
+
+    /// Takes in what may be taken in before one frame.
+    pub(crate) fn take(&mut self) -> Vec<Reply> {
+        let most = if self.inbox.len() > PILE { PILE } else { BATCHES };
+        let mut batches = 0;
+        let mut replies = Vec::new();
+        while batches < most {
+            let Some(envelope) = self.inbox.pop_front() else { break };
+            batches += usize::from(matches!(envelope.reply, Reply::Batch(_)));
+            replies.push(envelope.reply);
+        }
+        replies
+    }
+
+    /// What a reply does to the lane. Node details are the session's.
+    pub(crate) fn hear(&mut self, reply: Reply) -> Option<LaneAction> {
+        match reply {
+            Reply::Understood(rival) => Some(LaneAction::Understood(*rival)),
+            Reply::Progress(progress) => Some(LaneAction::Progress(progress)),
+            Reply::Root(root) => Some(LaneAction::Root(*root)),
+            Reply::Batch(events) => {
+                let mut tree = self.tree.borrow_mut();
+                tree.grow(&events);
+                Some(LaneAction::Grown(tree.tally()))
+            }
+            Reply::Paused(report) => Some(LaneAction::Paused(*report, self.settled())),
+            Reply::Done(report) => Some(LaneAction::Done(*report, self.settled())),
+            Reply::Failed(error) => {
+                self.watchdog = None;
+                Some(LaneAction::Failed(error))
+            }
+            Reply::Node(_) | Reply::Ready { .. } | Reply::InstanceRead(_) | Reply::Catalogue(_) => {
+                None
+            }
+        }
+    }
+
+    fn settled(&mut self) -> crate::state::tree::Tally {
+        self.watchdog = None;
+        let mut tree = self.tree.borrow_mut();
+        tree.settle();
+        tree.tally()
+    }
+
+    /// What follows once the root is solved: the search, where it was asked for already.
+    pub(crate) fn after_root(&mut self) -> Option<LaneAction> {
+        let nodes = self.replay.take();
+        if let Some(nodes) = nodes.filter(|&nodes| nodes > 0) {
+            self.post(&Request::Run { nodes: Some(nodes) });
+        } else if self.run_at_root {
+            self.post(&Request::Run { nodes: None });
+        } else {
+            return None;
+        }
+        self.run_at_root = false;
+        Some(LaneAction::Asked(Phase::Running))
+    }
+}

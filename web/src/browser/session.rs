@@ -1,0 +1,365 @@
+//! The workers of the page and what passes between them and its state.
+//!
+//! One worker reads instances and lists the catalogue; every lane has one of its own. Replies
+//! are kept until the next frame and taken in then, at most one batch of events a lane.
+
+use std::cell::RefCell;
+use std::collections::BTreeMap;
+use std::rc::{Rc, Weak};
+
+use gloo_timers::callback::Timeout;
+use record::event::NodeNumber;
+use record::message::{Complaint, Envelope, InstanceReport, LaneJob, Reply, Request};
+use record::results::ErrorReport;
+use record::scenario::InstanceText;
+use yew::{Callback, UseReducerDispatcher};
+
+use crate::browser::frame::Frame;
+use crate::browser::run::{LaneRun, TreeCell};
+use crate::browser::worker::{FromWorker, WorkerHandle};
+use crate::state::board::{Board, BoardAction, LaneAction};
+use crate::state::document::{Document, DocumentAction};
+use crate::state::lane::{LaneId, Phase};
+use crate::state::pointer::Shared;
+
+/// How long a worker may take to answer to Stop, in milliseconds.
+const PATIENCE: u32 = 1000;
+
+/// The workers. Clones are the same session.
+#[derive(Debug, Clone)]
+pub(crate) struct Session(Rc<RefCell<Inner>>);
+
+impl PartialEq for Session {
+    fn eq(&self, other: &Self) -> bool {
+        Rc::ptr_eq(&self.0, &other.0)
+    }
+}
+
+#[derive(Debug)]
+struct Inner {
+    board: UseReducerDispatcher<Board>,
+    document: UseReducerDispatcher<Document>,
+    lanes: BTreeMap<LaneId, LaneRun>,
+    author: Option<WorkerHandle>,
+    reading: Option<Shared<InstanceText>>,
+    wanted: Option<Shared<InstanceText>>,
+    frame: Option<Frame>,
+}
+
+impl Session {
+    /// A session that tells what happens to these two.
+    pub(crate) fn new(
+        board: UseReducerDispatcher<Board>,
+        document: UseReducerDispatcher<Document>,
+    ) -> Self {
+        let session = Self(Rc::new(RefCell::new(Inner {
+            board,
+            document,
+            lanes: BTreeMap::new(),
+            author: None,
+            reading: None,
+            wanted: None,
+            frame: None,
+        })));
+        session.start_author();
+        session
+    }
+
+    /// Reads a text; of several asked for in a row, the last one counts.
+    pub(crate) fn read(&self, text: Shared<InstanceText>) {
+        let mut inner = self.0.borrow_mut();
+        if inner.reading.is_some() {
+            inner.wanted = Some(text);
+        } else {
+            inner.send_reading(text);
+        }
+    }
+
+    /// Loads a rival into a lane and solves its root; what ran there is given up.
+    pub(crate) fn load(&self, id: LaneId, job: LaneJob) {
+        let action = {
+            let mut inner = self.0.borrow_mut();
+            let old = inner.lanes.remove(&id);
+            let run = old.as_ref().map(|lane| lane.job.run).unwrap_or_default();
+            let worker = old.and_then(|lane| lane.worker).or_else(|| self.lane_worker(id));
+            let mut lane = LaneRun::new(LaneJob { run, ..job }, worker);
+            let action = lane.load();
+            let missing = lane.worker.is_none();
+            inner.lanes.insert(id, lane);
+            if missing { no_worker() } else { action }
+        };
+        self.tell(id, action);
+    }
+
+    /// Ends a lane and its worker.
+    pub(crate) fn remove(&self, id: LaneId) {
+        let board = {
+            let mut inner = self.0.borrow_mut();
+            inner.lanes.remove(&id);
+            inner.board.clone()
+        };
+        board.dispatch(BoardAction::Removed(id));
+    }
+
+    /// The tree of a lane.
+    pub(crate) fn tree(&self, id: LaneId) -> Option<TreeCell> {
+        self.0.borrow().lanes.get(&id).map(|lane| lane.tree.clone())
+    }
+
+    /// Searches on, to the end or for some nodes.
+    pub(crate) fn search(&self, id: LaneId, nodes: Option<u32>) {
+        self.ask(id, &Request::Run { nodes }, Phase::Running);
+    }
+
+    /// Asks for the search as soon as the root is solved, from the beginning if the run is over.
+    pub(crate) fn search_anew(&self, id: LaneId) {
+        let action = {
+            let mut inner = self.0.borrow_mut();
+            let Some(lane) = inner.lanes.get_mut(&id) else { return };
+            if lane.worker.is_none() {
+                lane.worker = self.lane_worker(id);
+            }
+            lane.losses = 0;
+            lane.run_at_root = true;
+            lane.load()
+        };
+        self.tell(id, LaneAction::Notice(String::new()));
+        self.tell(id, action);
+    }
+
+    /// Begins the search once a root that is being solved is there.
+    pub(crate) fn search_when_ready(&self, id: LaneId) {
+        if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
+            lane.run_at_root = true;
+        }
+    }
+
+    /// Lets the search stand still.
+    pub(crate) fn pause(&self, id: LaneId) {
+        self.ask(id, &Request::Pause, Phase::Pausing);
+    }
+
+    /// Gives the run up; a worker that does not answer in time is replaced.
+    pub(crate) fn stop(&self, id: LaneId) {
+        let session = self.downgrade();
+        let watchdog = Timeout::new(PATIENCE, move || {
+            if let Some(session) = upgrade(&session) {
+                session.replace(id, "the worker did not answer to Stop within a second");
+            }
+        });
+        if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
+            lane.run_at_root = false;
+            lane.post(&Request::Stop);
+            lane.watchdog = Some(watchdog);
+        }
+        self.tell(id, LaneAction::Asked(Phase::Stopping));
+    }
+
+    /// Asks for a node in full.
+    pub(crate) fn inspect(&self, id: LaneId, node: NodeNumber) {
+        if let Some(lane) = self.0.borrow().lanes.get(&id) {
+            lane.post(&Request::Inspect(node));
+        }
+    }
+
+    fn ask(&self, id: LaneId, request: &Request, phase: Phase) {
+        if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
+            lane.losses = 0;
+            lane.post(request);
+        }
+        self.tell(id, LaneAction::Asked(phase));
+    }
+
+    fn tell(&self, id: LaneId, action: LaneAction) {
+        let board = self.0.borrow().board.clone();
+        board.dispatch(BoardAction::Lane(id, action));
+    }
+
+    fn downgrade(&self) -> Weak<RefCell<Inner>> {
+        Rc::downgrade(&self.0)
+    }
+
+    fn lane_worker(&self, id: LaneId) -> Option<WorkerHandle> {
+        let session = self.downgrade();
+        let hear = Callback::from(move |from| {
+            if let Some(session) = upgrade(&session) {
+                session.hear(id, from);
+            }
+        });
+        WorkerHandle::start(&hear).ok()
+    }
+
+    fn hear(&self, id: LaneId, from: FromWorker) {
+        match from {
+            FromWorker::Reply(envelope) => {
+                if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
+                    lane.keep(envelope);
+                }
+                self.request_frame();
+            }
+            FromWorker::Failure(why) => {
+                let why = if why.is_empty() { "the worker failed".to_owned() } else { why };
+                self.replace(id, &why);
+            }
+        }
+    }
+
+    fn request_frame(&self) {
+        let session = self.downgrade();
+        let mut inner = self.0.borrow_mut();
+        if inner.frame.is_none() {
+            inner.frame = Some(Frame::request(move || {
+                if let Some(session) = upgrade(&session) {
+                    session.take_in();
+                }
+            }));
+        }
+    }
+
+    /// Takes in what waits for this frame.
+    fn take_in(&self) {
+        let (board, actions, more) = {
+            let mut inner = self.0.borrow_mut();
+            inner.frame = None;
+            let mut actions = Vec::new();
+            for (&id, lane) in &mut inner.lanes {
+                take_in_lane(id, lane, &mut actions);
+            }
+            let more = inner.lanes.values().any(|lane| !lane.inbox.is_empty());
+            (inner.board.clone(), actions, more)
+        };
+        for action in actions {
+            board.dispatch(action);
+        }
+        if more {
+            self.request_frame();
+        }
+    }
+
+    /// Replaces a lane's worker and leads the new one to the node count of the old; the second
+    /// loss in a row ends the run.
+    fn replace(&self, id: LaneId, why: &str) {
+        let actions = {
+            let mut inner = self.0.borrow_mut();
+            let Some(lane) = inner.lanes.get_mut(&id) else { return };
+            lane.losses += 1;
+            lane.worker = None;
+            if lane.losses > 1 {
+                lane.watchdog = None;
+                lane.inbox.clear();
+                vec![LaneAction::Failed(error(why))]
+            } else {
+                lane.worker = self.lane_worker(id);
+                let nodes = lane.tree.borrow().tally().solved.saturating_sub(1);
+                lane.replay = Some(nodes);
+                vec![LaneAction::Notice(replaced(why, nodes)), lane.load()]
+            }
+        };
+        for action in actions {
+            self.tell(id, action);
+        }
+    }
+
+    fn start_author(&self) {
+        let session = self.downgrade();
+        let hear = Callback::from(move |from| {
+            if let Some(session) = upgrade(&session) {
+                session.hear_author(from);
+            }
+        });
+        let author = WorkerHandle::start(&hear).ok();
+        if let Some(author) = &author {
+            // A worker that takes no message tells so by its error event.
+            let _ = author.post(&Request::List);
+        }
+        self.0.borrow_mut().author = author;
+    }
+
+    fn hear_author(&self, from: FromWorker) {
+        match from {
+            FromWorker::Reply(Envelope { reply: Reply::InstanceRead(report), .. }) => {
+                self.finish_reading(*report);
+            }
+            FromWorker::Reply(Envelope { reply: Reply::Catalogue(entries), .. }) => {
+                let document = self.0.borrow().document.clone();
+                document.dispatch(DocumentAction::Catalogue(entries));
+            }
+            FromWorker::Reply(Envelope { reply: Reply::Failed(error), .. }) => {
+                self.finish_reading(unreadable(error.message));
+            }
+            FromWorker::Reply(_) => {}
+            FromWorker::Failure(why) => {
+                self.start_author();
+                self.finish_reading(unreadable(format!("the reader failed: {why}")));
+            }
+        }
+    }
+
+    fn finish_reading(&self, report: InstanceReport) {
+        let (document, text) = {
+            let mut inner = self.0.borrow_mut();
+            let Some(text) = inner.reading.take() else { return };
+            if let Some(wanted) = inner.wanted.take() {
+                inner.send_reading(wanted);
+                return;
+            }
+            (inner.document.clone(), text)
+        };
+        document.dispatch(DocumentAction::Read(text, report));
+    }
+}
+
+impl Inner {
+    fn send_reading(&mut self, text: Shared<InstanceText>) {
+        if let Some(author) = &self.author {
+            // A worker that takes no message tells so by its error event.
+            let _ = author.post(&Request::Read((*text).clone()));
+        }
+        self.reading = Some(text);
+    }
+}
+
+fn upgrade(session: &Weak<RefCell<Inner>>) -> Option<Session> {
+    session.upgrade().map(Session)
+}
+
+fn take_in_lane(id: LaneId, lane: &mut LaneRun, actions: &mut Vec<BoardAction>) {
+    for reply in lane.take() {
+        if let Reply::Node(detail) = reply {
+            actions.push(BoardAction::Detail(id, *detail));
+            continue;
+        }
+        let rooted = matches!(reply, Reply::Root(_));
+        actions.extend(lane.hear(reply).map(|action| BoardAction::Lane(id, action)));
+        if rooted {
+            actions.extend(lane.after_root().map(|action| BoardAction::Lane(id, action)));
+        }
+    }
+}
+
+fn replaced(why: &str, nodes: u32) -> String {
+    let nodes = report::number::of(u64::from(nodes), "node");
+    format!("The worker was replaced ({why}); the run is led to the same {nodes}.")
+}
+
+fn error(message: &str) -> ErrorReport {
+    ErrorReport { message: message.to_owned(), complaints: Vec::new(), place: String::new() }
+}
+
+fn no_worker() -> LaneAction {
+    LaneAction::Failed(error("the browser did not start a worker for this rival"))
+}
+
+fn unreadable(message: String) -> InstanceReport {
+    let complaint = Complaint {
+        error: true,
+        code: "unreadable".to_owned(),
+        line: 1,
+        column: 1,
+        start: 0,
+        end: 0,
+        message,
+        mend: String::new(),
+    };
+    InstanceReport { complaints: vec![complaint], ..InstanceReport::default() }
+}

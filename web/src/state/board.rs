@@ -1,0 +1,307 @@
+//! The lanes and what is selected among their nodes.
+
+use std::collections::BTreeMap;
+use std::rc::Rc;
+
+use record::event::NodeNumber;
+use record::message::{NodeDetail, Progress, RivalReport};
+use record::results::{ErrorReport, RootReport, SearchReport};
+use yew::Reducible;
+
+use crate::state::lane::{Lane, LaneId, Phase};
+use crate::state::pointer::Shared;
+use crate::state::tree::Tally;
+
+/// A node of a lane.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) struct Selection {
+    /// The lane.
+    pub(crate) lane: LaneId,
+    /// The node.
+    pub(crate) node: NodeNumber,
+}
+
+/// How far beyond the best value the axis goes at most, as a share of the way to it.
+const BEYOND: f64 = 0.3;
+
+/// All lanes.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub(crate) struct Board {
+    /// By id.
+    pub(crate) lanes: BTreeMap<LaneId, Shared<Lane>>,
+    /// The node the inspector shows.
+    pub(crate) selection: Option<Selection>,
+    /// Whether a person chose it.
+    chosen: bool,
+    /// The selected node in full, once its worker has answered.
+    pub(crate) detail: Option<Shared<NodeDetail>>,
+}
+
+/// What happens to lanes.
+#[derive(Debug)]
+pub(crate) enum BoardAction {
+    /// Something happens in a lane.
+    Lane(LaneId, LaneAction),
+    /// A lane is gone.
+    Removed(LaneId),
+    /// A person selects a node.
+    Select(Selection),
+    /// A node in full.
+    Detail(LaneId, NodeDetail),
+}
+
+/// What happens in a lane.
+#[derive(Debug)]
+pub(crate) enum LaneAction {
+    /// A run begins.
+    Load,
+    /// The rival was understood.
+    Understood(RivalReport),
+    /// Long work goes on.
+    Progress(Progress),
+    /// The root is solved.
+    Root(RootReport),
+    /// The tree has grown.
+    Grown(Tally),
+    /// The phase is another, because it was asked for.
+    Asked(Phase),
+    /// The search stands still.
+    Paused(SearchReport, Tally),
+    /// The search has ended.
+    Done(SearchReport, Tally),
+    /// It could not be carried out.
+    Failed(ErrorReport),
+    /// Something happened to the worker.
+    Notice(String),
+}
+
+impl Reducible for Board {
+    type Action = BoardAction;
+
+    fn reduce(self: Rc<Self>, action: BoardAction) -> Rc<Self> {
+        let mut board = (*self).clone();
+        match action {
+            BoardAction::Lane(id, action) => board.in_lane(id, action),
+            BoardAction::Removed(id) => board.remove(id),
+            BoardAction::Select(selection) => {
+                if board.selection == Some(selection) {
+                    return self;
+                }
+                board.select(selection);
+                board.chosen = true;
+            }
+            BoardAction::Detail(id, detail) => {
+                if board.selection != Some(Selection { lane: id, node: detail.node }) {
+                    return self;
+                }
+                board.detail = Some(Shared::new(detail));
+            }
+        }
+        board.into()
+    }
+}
+
+impl Board {
+    /// A lane; an idle one when it has not begun.
+    pub(crate) fn lane(&self, id: LaneId) -> Shared<Lane> {
+        self.lanes.get(&id).cloned().unwrap_or_else(|| Shared::new(Lane::default()))
+    }
+
+    /// The best solution's value over all lanes that are rivals for the optimum.
+    pub(crate) fn best(&self) -> Option<f64> {
+        let values = self.lanes.values().filter_map(|lane| lane.incumbent());
+        values.reduce(|one, other| if self.is_better(other, one) { other } else { one })
+    }
+
+    /// Whether one value is better than another in the direction of the objective.
+    pub(crate) fn is_better(&self, one: f64, other: f64) -> bool {
+        if self.maximise() { one > other } else { one < other }
+    }
+
+    fn maximise(&self) -> bool {
+        self.lanes.values().any(|lane| lane.maximise())
+    }
+
+    /// What the shared axis must show: every root and node, and the best value known. Nodes far
+    /// beyond that value are pruned; they stand at the end of the axis.
+    pub(crate) fn domain(&self, best: Option<f64>) -> Option<(f64, f64)> {
+        let mut domain: Option<(f64, f64)> = None;
+        let mut widen = |value: f64| {
+            let (low, high) = domain.unwrap_or((value, value));
+            let low = if value < low { value } else { low };
+            domain = Some((low, if value > high { value } else { high }));
+        };
+        for lane in self.lanes.values() {
+            let (low, high) = lane.tally.extent.unzip();
+            [lane.root_bound(), low, high].into_iter().flatten().for_each(&mut widen);
+        }
+        best.into_iter().for_each(&mut widen);
+        let (low, high) = domain?;
+        let Some(best) = best else { return Some((low, high)) };
+        let (last, first) = (best + BEYOND * (best - low), best - BEYOND * (high - best));
+        Some(if self.maximise() {
+            (if first > low { first } else { low }, high)
+        } else {
+            (low, if last < high { last } else { high })
+        })
+    }
+
+    fn in_lane(&mut self, id: LaneId, action: LaneAction) {
+        let starts = matches!(action, LaneAction::Load);
+        let rooted = matches!(action, LaneAction::Root(_));
+        let mut lane = (*self.lane(id)).clone();
+        lane.take(action);
+        self.lanes.insert(id, Shared::new(lane));
+        if starts && self.selection.is_some_and(|selection| selection.lane == id) {
+            self.forget();
+        }
+        if rooted {
+            self.show_a_root();
+        }
+    }
+
+    fn remove(&mut self, id: LaneId) {
+        self.lanes.remove(&id);
+        if self.selection.is_some_and(|selection| selection.lane == id) {
+            self.forget();
+            self.show_a_root();
+        }
+    }
+
+    fn forget(&mut self) {
+        (self.selection, self.detail, self.chosen) = (None, None, false);
+    }
+
+    fn select(&mut self, selection: Selection) {
+        (self.selection, self.detail) = (Some(selection), None);
+    }
+
+    /// Until a person selects a node, the inspector shows the root of the first lane that has one.
+    fn show_a_root(&mut self) {
+        let first = self.lanes.iter().find(|(_, lane)| lane.root.is_some()).map(|(&id, _)| id);
+        let Some(lane) = first.filter(|_| !self.chosen) else { return };
+        let root = Selection { lane, node: NodeNumber(1) };
+        if self.selection != Some(root) {
+            self.select(root);
+        }
+    }
+}
+
+impl Lane {
+    fn take(&mut self, action: LaneAction) {
+        match action {
+            LaneAction::Load => {
+                let notice = std::mem::take(&mut self.notice);
+                *self = Self { phase: Phase::Loading, notice, ..Self::default() };
+            }
+            LaneAction::Understood(rival) => self.rival = Some(Shared::new(rival)),
+            LaneAction::Progress(progress) => self.progress = Some(progress),
+            LaneAction::Root(root) => {
+                self.root = Some(Shared::new(root));
+                self.phase = Phase::Ready;
+            }
+            LaneAction::Grown(tally) => self.tally = tally,
+            LaneAction::Asked(phase) => self.phase = phase,
+            LaneAction::Paused(search, tally) => self.rest(Phase::Paused, search, tally),
+            LaneAction::Done(search, tally) => self.rest(Phase::Done, search, tally),
+            LaneAction::Failed(error) => {
+                self.error = Some(Shared::new(error));
+                self.phase = Phase::Failed;
+            }
+            LaneAction::Notice(notice) => self.notice = notice,
+        }
+    }
+
+    fn rest(&mut self, phase: Phase, search: SearchReport, tally: Tally) {
+        self.phase = phase;
+        self.search = Some(Shared::new(search));
+        self.tally = tally;
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use record::results::Status;
+
+    fn reduce(board: Rc<Board>, action: BoardAction) -> Rc<Board> {
+        board.reduce(action)
+    }
+
+    fn root(bound: f64) -> LaneAction {
+        LaneAction::Root(RootReport {
+            status: Status::Optimal,
+            bound: Some(bound),
+            checked: true,
+            checked_bound: None,
+            second_opinion: None,
+            iterations: 1,
+            fractional: 0,
+            rounds: 0,
+            added: 0,
+            added_by_family: Vec::new(),
+            ray: Vec::new(),
+            stopped: None,
+        })
+    }
+
+    fn rooted(ids: &[u32]) -> Rc<Board> {
+        ids.iter().fold(Rc::new(Board::default()), |board, &id| {
+            let board = reduce(board, BoardAction::Lane(LaneId(id), LaneAction::Load));
+            reduce(board, BoardAction::Lane(LaneId(id), root(10.0)))
+        })
+    }
+
+    #[test]
+    fn the_first_root_is_shown_until_a_person_chooses() {
+        let board = rooted(&[2, 1]);
+        assert_eq!(board.selection, Some(Selection { lane: LaneId(1), node: NodeNumber(1) }));
+        let own = Selection { lane: LaneId(2), node: NodeNumber(5) };
+        let board = reduce(board, BoardAction::Select(own));
+        let board = reduce(board, BoardAction::Lane(LaneId(1), root(11.0)));
+        assert_eq!(board.selection, Some(own));
+    }
+
+    #[test]
+    fn selecting_the_same_node_changes_nothing() {
+        let board = rooted(&[1]);
+        let again = reduce(Rc::clone(&board), BoardAction::Select(board.selection.unwrap()));
+        assert!(Rc::ptr_eq(&board, &again));
+    }
+
+    #[test]
+    fn a_new_run_forgets_the_old_one() {
+        let board = rooted(&[1]);
+        let board = reduce(board, BoardAction::Lane(LaneId(1), LaneAction::Load));
+        let lane = board.lane(LaneId(1));
+        assert_eq!(lane.phase, Phase::Loading);
+        assert!(lane.root.is_none() && board.selection.is_none());
+    }
+
+    #[test]
+    fn the_best_value_is_over_all_lanes() {
+        let board = rooted(&[1, 2]);
+        let grown = |value| LaneAction::Grown(Tally { incumbent: Some(value), ..Tally::default() });
+        let board = reduce(board, BoardAction::Lane(LaneId(1), grown(160.0)));
+        let board = reduce(board, BoardAction::Lane(LaneId(2), grown(153.0)));
+        assert_eq!(board.best(), Some(153.0));
+    }
+
+    #[test]
+    fn the_axis_shows_roots_and_the_best_value_but_not_far_beyond() {
+        let board = rooted(&[1]);
+        assert_eq!(board.domain(None), Some((10.0, 10.0)));
+        let extent = Some((10.0, 90.0));
+        let grown = LaneAction::Grown(Tally { extent, ..Tally::default() });
+        let board = reduce(board, BoardAction::Lane(LaneId(1), grown));
+        assert_eq!(board.domain(None), Some((10.0, 90.0)));
+        assert_eq!(board.domain(Some(20.0)), Some((10.0, 23.0)));
+        assert_eq!(Board::default().domain(None), None);
+    }
+
+    #[test]
+    fn a_removed_lane_leaves_no_selection() {
+        let board = reduce(rooted(&[1]), BoardAction::Removed(LaneId(1)));
+        assert!(board.selection.is_none() && board.lanes.is_empty());
+    }
+}

@@ -1,0 +1,269 @@
+//! The scenario as it is edited: the instance's text, what was read of it, and the rivals.
+
+use std::rc::Rc;
+
+use record::message::{CatalogueEntry, InstanceReport};
+use record::scenario::{FamilyState, InstanceText, Rival, Run, Scenario, letter};
+use yew::Reducible;
+
+use crate::state::lane::LaneId;
+use crate::state::pointer::Shared;
+
+/// The readers, as the scenario file names them, with a word for people.
+pub(crate) const READERS: [(&str, &str); 4] = [
+    ("matrix", "distance table"),
+    ("points", "points in the plane"),
+    ("tsplib", "TSPLIB file"),
+    ("blocks", "blocks"),
+];
+
+/// A title for an instance that has none.
+const UNTITLED: &str = "Pasted instance";
+
+/// A rival in its lane.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) struct Slot {
+    /// The lane.
+    pub(crate) id: LaneId,
+    /// The rival.
+    pub(crate) rival: Shared<Rival>,
+}
+
+/// An instance that was read and can be used.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) struct Accepted {
+    /// The text.
+    pub(crate) text: Shared<InstanceText>,
+    /// What was understood.
+    pub(crate) report: Shared<InstanceReport>,
+}
+
+/// The scenario as it is edited.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) struct Document {
+    /// The title.
+    pub(crate) title: String,
+    /// Whether a person gave the title.
+    titled: bool,
+    /// The seed.
+    pub(crate) seed: u64,
+    /// How rivals are run.
+    pub(crate) run: Shared<Run>,
+    /// The text in the box.
+    pub(crate) draft: Shared<InstanceText>,
+    /// What was read of the text in the box; `None` while it is being read.
+    pub(crate) reading: Option<Shared<InstanceReport>>,
+    /// The last text that could be used, which the rivals run on.
+    pub(crate) accepted: Option<Accepted>,
+    /// The rivals in order.
+    pub(crate) slots: Vec<Slot>,
+    /// The shipped formulations.
+    pub(crate) catalogue: Shared<Vec<CatalogueEntry>>,
+    next: u32,
+}
+
+/// What a person, or the authoring worker, does to the document.
+#[derive(Debug)]
+pub(crate) enum DocumentAction {
+    /// The title is given.
+    Title(String),
+    /// The text in the box is another.
+    Text(String),
+    /// The reader is another; `None` leaves it to be guessed.
+    Reader(Option<String>),
+    /// A text was read.
+    Read(Shared<InstanceText>, InstanceReport),
+    /// The catalogue came.
+    Catalogue(Vec<CatalogueEntry>),
+    /// A rival from the catalogue joins.
+    Add(String),
+    /// A rival leaves.
+    Remove(LaneId),
+    /// A family of a rival gets a state.
+    Family(LaneId, String, FamilyState),
+}
+
+impl Document {
+    /// The document of a scenario.
+    pub(crate) fn open(scenario: Scenario) -> Self {
+        let mut document = Self {
+            titled: false,
+            title: scenario.title,
+            seed: scenario.seed,
+            run: Shared::new(scenario.run),
+            draft: Shared::new(scenario.instance.unwrap_or_default()),
+            reading: None,
+            accepted: None,
+            slots: Vec::new(),
+            catalogue: Shared::new(Vec::new()),
+            next: 1,
+        };
+        for rival in scenario.rivals {
+            document.push(rival);
+        }
+        document
+    }
+
+    /// The letter of the rival at a place.
+    pub(crate) fn letter(place: usize) -> String {
+        letter(place)
+    }
+
+    /// A title for a rival: its own, else the catalogue's, else its id.
+    pub(crate) fn rival_title(&self, rival: &Rival) -> String {
+        if !rival.title.is_empty() {
+            return rival.title.clone();
+        }
+        let id = rival.from.as_deref().unwrap_or("own formulation");
+        let entry = self.catalogue.iter().find(|entry| entry.id == id);
+        entry.map_or_else(|| id.to_owned(), |entry| entry.title.clone())
+    }
+
+    fn push(&mut self, rival: Rival) {
+        self.slots.push(Slot { id: LaneId(self.next), rival: Shared::new(rival) });
+        self.next += 1;
+    }
+
+    /// Another text in the box; what was read of the old one does not hold for it.
+    fn draft(&mut self, draft: InstanceText) {
+        self.draft = Shared::new(draft);
+        self.reading = None;
+    }
+
+    fn read(&mut self, text: Shared<InstanceText>, report: InstanceReport) {
+        let report = Shared::new(report);
+        self.reading = Some(report.clone());
+        if !report.usable {
+            return;
+        }
+        let first = self.accepted.is_none();
+        if !first && !self.titled {
+            self.title =
+                if report.title.is_empty() { UNTITLED.to_owned() } else { report.title.clone() };
+        }
+        self.accepted = Some(Accepted { text, report });
+    }
+
+    fn set_family(&mut self, id: LaneId, family: String, state: FamilyState) {
+        let Some(slot) = self.slots.iter_mut().find(|slot| slot.id == id) else { return };
+        let mut rival = (*slot.rival).clone();
+        rival.families.insert(family, state);
+        slot.rival = Shared::new(rival);
+    }
+}
+
+impl Reducible for Document {
+    type Action = DocumentAction;
+
+    fn reduce(self: Rc<Self>, action: DocumentAction) -> Rc<Self> {
+        let mut document = (*self).clone();
+        match action {
+            DocumentAction::Title(title) => {
+                document.titled = !title.trim().is_empty();
+                document.title = title;
+            }
+            DocumentAction::Text(text) => {
+                if text == document.draft.text {
+                    return self;
+                }
+                let reader = document.draft.reader.clone();
+                document.draft(InstanceText { reader, text, ..InstanceText::default() });
+            }
+            DocumentAction::Reader(reader) => {
+                document.draft(InstanceText { reader, ..(*document.draft).clone() });
+            }
+            DocumentAction::Read(text, report) => {
+                if text != document.draft {
+                    return self;
+                }
+                document.read(text, report);
+            }
+            DocumentAction::Catalogue(entries) => document.catalogue = Shared::new(entries),
+            DocumentAction::Add(id) => {
+                document.push(Rival { from: Some(id), ..Rival::default() });
+            }
+            DocumentAction::Remove(id) => document.slots.retain(|slot| slot.id != id),
+            DocumentAction::Family(id, family, state) => document.set_family(id, family, state),
+        }
+        document.into()
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn document() -> Rc<Document> {
+        let rival = |id: &str| Rival { from: Some(id.to_owned()), ..Rival::default() };
+        Rc::new(Document::open(Scenario {
+            title: "Round".to_owned(),
+            instance: Some(InstanceText { text: "0 1\n1 0".to_owned(), ..InstanceText::default() }),
+            rivals: vec![rival("atsp/labels"), rival("atsp/subtours")],
+            ..Scenario::default()
+        }))
+    }
+
+    fn usable(title: &str) -> InstanceReport {
+        InstanceReport { usable: true, title: title.to_owned(), ..InstanceReport::default() }
+    }
+
+    fn read(document: Rc<Document>, report: InstanceReport) -> Rc<Document> {
+        let text = document.draft.clone();
+        document.reduce(DocumentAction::Read(text, report))
+    }
+
+    #[test]
+    fn a_broken_text_keeps_the_last_good_instance() {
+        let first = read(document(), usable(""));
+        let good = first.accepted.clone();
+        let typed = first.reduce(DocumentAction::Text("nonsense".to_owned()));
+        let broken = read(typed, InstanceReport::default());
+        assert_eq!(broken.draft.text, "nonsense");
+        assert_eq!(broken.accepted, good);
+        assert_eq!(broken.title, "Round");
+    }
+
+    #[test]
+    fn a_reading_of_an_older_text_is_dropped() {
+        let first = document();
+        let old = first.draft.clone();
+        let typed = first.reduce(DocumentAction::Text("0 2\n2 0".to_owned()));
+        let late = Rc::clone(&typed).reduce(DocumentAction::Read(old, usable("")));
+        assert!(Rc::ptr_eq(&typed, &late));
+    }
+
+    #[test]
+    fn another_instance_brings_its_title_unless_one_was_given() {
+        let first = read(document(), usable("ignored"));
+        assert_eq!(first.title, "Round");
+        let typed = first.reduce(DocumentAction::Text("0 2\n2 0".to_owned()));
+        let second = read(typed, usable(""));
+        assert_eq!(second.title, UNTITLED);
+        let titled = second.reduce(DocumentAction::Title("Mine".to_owned()));
+        let third =
+            read(titled.reduce(DocumentAction::Text("0 3\n3 0".to_owned())), usable("other"));
+        assert_eq!(third.title, "Mine");
+    }
+
+    #[test]
+    fn a_family_touches_its_own_lane_only() {
+        let before = document();
+        let (one, two) = (before.slots[0].clone(), before.slots[1].clone());
+        let after =
+            before.reduce(DocumentAction::Family(one.id, "order".to_owned(), FamilyState::Out));
+        assert_ne!(after.slots[0], one);
+        assert_eq!(after.slots[1], two);
+        assert_eq!(after.slots[0].rival.families["order"], FamilyState::Out);
+    }
+
+    #[test]
+    fn lanes_keep_their_ids_when_others_leave() {
+        let before = document();
+        let kept = before.slots[1].id;
+        let after = before.reduce(DocumentAction::Remove(LaneId(1)));
+        let added = after.reduce(DocumentAction::Add("atsp/cuts".to_owned()));
+        assert_eq!(added.slots[0].id, kept);
+        assert_eq!(added.slots[1].id, LaneId(3));
+        assert_eq!(Document::letter(1), "B");
+    }
+}

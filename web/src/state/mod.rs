@@ -1,0 +1,10 @@
+//! What the page knows, without the page: reducers and the trees as they grow. Nothing here
+//! touches a document, so that all of it is tested natively.
+
+pub(crate) mod board;
+pub(crate) mod document;
+pub(crate) mod lane;
+pub(crate) mod outline;
+pub(crate) mod pointer;
+pub(crate) mod tree;
+pub(crate) mod words;

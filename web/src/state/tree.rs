@@ -1,0 +1,287 @@
+//! A search tree as its events tell it, node by node, with places for drawing.
+//!
+//! Nodes are numbered from 1 in the order of creation, so node `n` stands at place `n − 1` and
+//! parents come before their children. A node without a bound of its own (open, infeasible)
+//! stands at its parent's.
+
+use record::event::{Branching, Event, NodeNumber, NodeState};
+use report::layout::Layout;
+
+/// No node.
+const NONE: u32 = u32::MAX;
+
+/// One node.
+#[derive(Debug, Clone)]
+pub(crate) struct Node {
+    /// How it stands.
+    pub(crate) state: NodeState,
+    /// Its own bound, else its parent's; `None` before the root is solved.
+    pub(crate) stand: Option<f64>,
+    /// Whether the bound is its own.
+    pub(crate) own_bound: bool,
+    /// Its distance from the root.
+    pub(crate) depth: u32,
+    /// What made it.
+    pub(crate) branching: Option<Branching>,
+    parent: u32,
+    first_child: u32,
+    last_child: u32,
+    next_sibling: u32,
+}
+
+/// How many nodes stand how.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub(crate) struct Tally {
+    /// Grows with every change: what was drawn at another version is stale.
+    pub(crate) version: u64,
+    /// Nodes made.
+    pub(crate) made: u32,
+    /// Nodes solved.
+    pub(crate) solved: u32,
+    /// Nodes open.
+    pub(crate) open: u32,
+    /// The bound of the whole tree.
+    pub(crate) bound: Option<f64>,
+    /// The best solution's value.
+    pub(crate) incumbent: Option<f64>,
+    /// Least and greatest place of a node on the axis.
+    pub(crate) extent: Option<(f64, f64)>,
+}
+
+/// The tree.
+#[derive(Debug, Default)]
+pub(crate) struct Tree {
+    nodes: Vec<Node>,
+    layout: Layout,
+    tally: Tally,
+}
+
+impl Tree {
+    /// Takes in events and, when much has grown, deals the places anew.
+    pub(crate) fn grow(&mut self, events: &[Event]) {
+        for event in events {
+            self.apply(event);
+        }
+        if self.layout.is_overgrown() {
+            self.layout.tidy();
+        }
+        self.tally.version += 1;
+    }
+
+    /// Spreads the leaves evenly: for a tree that stands still.
+    pub(crate) fn settle(&mut self) {
+        if !self.layout.is_tidy() {
+            self.layout.tidy();
+            self.tally.version += 1;
+        }
+    }
+
+    fn apply(&mut self, event: &Event) {
+        match event {
+            Event::Created { parent, branching, .. } => self.create(*parent, branching.clone()),
+            Event::Solved { node, state, bound, .. } => self.solve(*node, *state, *bound),
+            Event::Dropped { node, state } => self.set_state(*node, *state),
+            Event::Incumbent { value, .. } => self.tally.incumbent = Some(*value),
+            Event::Bound { bound, nodes } => {
+                self.tally.bound = Some(*bound);
+                self.tally.solved = self.tally.solved.max(*nodes);
+            }
+        }
+    }
+
+    fn create(&mut self, parent: Option<NodeNumber>, branching: Option<Branching>) {
+        let place = self.nodes.len() as u32;
+        let parent = parent.and_then(|number| self.place(number));
+        let above = parent.map(|at| &self.nodes[at]);
+        self.nodes.push(Node {
+            state: NodeState::Open,
+            stand: above.and_then(|node| node.stand),
+            own_bound: false,
+            depth: above.map_or(0, |node| node.depth + 1),
+            branching,
+            parent: parent.map_or(NONE, |at| at as u32),
+            first_child: NONE,
+            last_child: NONE,
+            next_sibling: NONE,
+        });
+        if let Some(at) = parent {
+            self.adopt(at, place);
+        }
+        self.layout.push(parent);
+        self.tally.made += 1;
+        self.tally.open += 1;
+    }
+
+    fn adopt(&mut self, parent: usize, child: u32) {
+        let elder = self.nodes[parent].last_child;
+        self.nodes[parent].last_child = child;
+        if elder == NONE {
+            self.nodes[parent].first_child = child;
+        } else {
+            self.nodes[elder as usize].next_sibling = child;
+        }
+    }
+
+    fn solve(&mut self, number: NodeNumber, state: NodeState, bound: Option<f64>) {
+        self.set_state(number, state);
+        self.tally.solved += 1;
+        let Some(place) = self.place(number) else { return };
+        let Some(bound) = bound else { return };
+        let node = &mut self.nodes[place];
+        (node.stand, node.own_bound) = (Some(bound), true);
+        let (low, high) = self.tally.extent.unwrap_or((bound, bound));
+        let low = if bound < low { bound } else { low };
+        let high = if bound > high { bound } else { high };
+        self.tally.extent = Some((low, high));
+    }
+
+    fn set_state(&mut self, number: NodeNumber, state: NodeState) {
+        let Some(place) = self.place(number) else { return };
+        let node = &mut self.nodes[place];
+        if node.state == NodeState::Open && state != NodeState::Open {
+            self.tally.open -= 1;
+        }
+        node.state = state;
+    }
+
+    /// The place of a node's number, if there is such a node.
+    pub(crate) fn place(&self, number: NodeNumber) -> Option<usize> {
+        let place = (number.0 as usize).checked_sub(1)?;
+        (place < self.nodes.len()).then_some(place)
+    }
+
+    /// The number of the node at a place.
+    pub(crate) fn number(place: usize) -> NodeNumber {
+        NodeNumber(place as u32 + 1)
+    }
+
+    /// All nodes by place.
+    pub(crate) fn nodes(&self) -> &[Node] {
+        &self.nodes
+    }
+
+    /// The counts.
+    pub(crate) fn tally(&self) -> Tally {
+        self.tally
+    }
+
+    /// The height of a node in [0, 1].
+    pub(crate) fn height(&self, place: usize) -> f64 {
+        f64::from(self.layout.height(place))
+    }
+
+    /// The parent of a node.
+    pub(crate) fn parent(&self, place: usize) -> Option<usize> {
+        some(self.nodes.get(place)?.parent)
+    }
+
+    /// The first child of a node.
+    pub(crate) fn first_child(&self, place: usize) -> Option<usize> {
+        some(self.nodes.get(place)?.first_child)
+    }
+
+    /// The child of the same parent that came next.
+    pub(crate) fn next_sibling(&self, place: usize) -> Option<usize> {
+        some(self.nodes.get(place)?.next_sibling)
+    }
+
+    /// The nearest node of the same depth above (`up`) or below. O(nodes).
+    pub(crate) fn neighbour(&self, place: usize, up: bool) -> Option<usize> {
+        let depth = self.nodes.get(place)?.depth;
+        let height = self.height(place);
+        let distance = |other: usize| {
+            let step = self.height(other) - height;
+            if up { -step } else { step }
+        };
+        (0..self.nodes.len())
+            .filter(|&other| self.nodes[other].depth == depth && distance(other) > 0.0)
+            .min_by(|&a, &b| distance(a).total_cmp(&distance(b)))
+    }
+}
+
+fn some(link: u32) -> Option<usize> {
+    (link != NONE).then_some(link as usize)
+}
+
+#[cfg(test)]
+pub(crate) mod tests {
+    use super::*;
+    use record::event::Side;
+
+    /// A node that is made under a parent.
+    pub(crate) fn created(node: u32, parent: u32) -> Event {
+        Event::Created {
+            node: NodeNumber(node),
+            parent: (parent > 0).then_some(NodeNumber(parent)),
+            branching: (parent > 0).then_some(Branching {
+                column: 0,
+                side: Side::AtMost,
+                bound: 0.0,
+            }),
+        }
+    }
+
+    /// A node that is solved.
+    pub(crate) fn solved(node: u32, state: NodeState, bound: Option<f64>) -> Event {
+        Event::Solved {
+            node: NodeNumber(node),
+            state,
+            bound,
+            fractional: 0,
+            iterations: 0,
+            rows_added: 0,
+            branch_column: None,
+        }
+    }
+
+    /// A root with two children, the first of which is infeasible.
+    pub(crate) fn small() -> Tree {
+        let mut tree = Tree::default();
+        tree.grow(&[
+            created(1, 0),
+            solved(1, NodeState::Branched, Some(10.0)),
+            created(2, 1),
+            created(3, 1),
+            solved(2, NodeState::Infeasible, None),
+        ]);
+        tree
+    }
+
+    #[test]
+    fn a_node_without_a_bound_stands_at_its_parents() {
+        let tree = small();
+        assert_eq!(tree.nodes()[1].stand, Some(10.0));
+        assert!(!tree.nodes()[1].own_bound && tree.nodes()[0].own_bound);
+        assert_eq!(tree.nodes()[2].depth, 1);
+        assert_eq!(tree.tally().open, 1);
+        assert_eq!(tree.tally().extent, Some((10.0, 10.0)));
+    }
+
+    #[test]
+    fn one_walks_from_node_to_node() {
+        let mut tree = small();
+        tree.settle();
+        assert_eq!(tree.first_child(0), Some(1));
+        assert_eq!(tree.next_sibling(1), Some(2));
+        assert_eq!(tree.parent(2), Some(0));
+        assert_eq!(tree.neighbour(1, false), Some(2));
+        assert_eq!(tree.neighbour(1, true), None);
+        assert_eq!(tree.parent(0), None);
+    }
+
+    #[test]
+    fn an_unknown_number_changes_nothing() {
+        let mut tree = small();
+        let before = tree.tally();
+        tree.grow(&[Event::Dropped { node: NodeNumber(99), state: NodeState::Pruned }]);
+        assert_eq!(Tally { version: before.version, ..tree.tally() }, before);
+        assert_eq!(tree.place(NodeNumber(0)), None);
+    }
+
+    #[test]
+    fn a_node_that_is_dropped_is_open_no_more() {
+        let mut tree = small();
+        tree.grow(&[Event::Dropped { node: NodeNumber(3), state: NodeState::Pruned }]);
+        assert_eq!(tree.tally().open, 0);
+    }
+}

@@ -1,0 +1,70 @@
+//! The page as a whole.
+
+use yew::prelude::*;
+
+use crate::browser::session::Session;
+use crate::demo::demo;
+use crate::state::board::Board;
+use crate::state::document::{Document, DocumentAction};
+use crate::view::announcer::Announcer;
+use crate::view::evidence::Evidence;
+use crate::view::hands::Hands;
+use crate::view::inspector::Inspector;
+use crate::view::instance::Instance;
+use crate::view::rivals::Rivals;
+
+/// The page.
+#[component]
+pub(crate) fn App() -> Html {
+    let document = use_reducer(|| Document::open(demo()));
+    let board = use_reducer(Board::default);
+    let hands = use_memo((), |()| Hands {
+        session: Session::new(board.dispatcher(), document.dispatcher()),
+        document: document.dispatcher(),
+        board: board.dispatcher(),
+    });
+    let document = (*document).clone();
+    let board = (*board).clone();
+    html! {
+        <ContextProvider<Hands> context={(*hands).clone()}>
+            <Header title={document.title.clone()} />
+            <main>
+                <Instance document={document.clone()} />
+                <Rivals document={document.clone()} board={board.clone()} />
+                <Inspector document={document.clone()} board={board.clone()} />
+                <Evidence {document} board={board.clone()} />
+            </main>
+            <Announcer {board} />
+        </ContextProvider<Hands>>
+    }
+}
+
+#[derive(Properties, PartialEq)]
+struct HeaderProps {
+    title: String,
+}
+
+#[component]
+fn Header(props: &HeaderProps) -> Html {
+    let hands = use_context::<Hands>();
+    use_effect_with(props.title.clone(), |title| {
+        gloo_utils::document().set_title(&format!("{title} – Hullward"));
+    });
+    let oninput = Callback::from(move |event: InputEvent| {
+        let input: web_sys::HtmlInputElement = event.target_unchecked_into();
+        if let Some(hands) = &hands {
+            hands.document.dispatch(DocumentAction::Title(input.value()));
+        }
+    });
+    html! {
+        <header class="head">
+            <h1>
+                <input
+                    class="title" aria-label="Scenario title" data-testid="title" type="text"
+                    maxlength="120" value={props.title.clone()} {oninput}
+                />
+            </h1>
+            <p class="soft">{ "Hullward · nothing leaves this tab" }</p>
+        </header>
+    }
+}

@@ -1,0 +1,72 @@
+//! The rivals side by side in a table, with what the figures mean.
+
+use report::number::count;
+use yew::prelude::*;
+
+use crate::state::board::Board;
+use crate::state::document::{Document, Slot};
+use crate::view::figure::{figure, gap, share};
+use crate::view::inspector::InspectorProps as EvidenceProps;
+use crate::view::lane::is_over;
+use crate::view::rivals::HUES;
+
+/// The section.
+#[component]
+pub(crate) fn Evidence(props: &EvidenceProps) -> Html {
+    let (document, board) = (&props.document, &props.board);
+    let best = crate::view::rivals::best_value(document, board);
+    html! {
+        <section aria-labelledby="evidence-heading" data-testid="evidence">
+            <h2 id="evidence-heading">{ "Evidence" }</h2>
+            <div class="scroll" tabindex="0" role="region" aria-label="The rivals side by side">
+                <table>
+                    <thead><tr>
+                        for head in ["rival", "rows", "columns", "root bound", "root gap", "nodes", "bound now", "best found", "root bound checked"] {
+                            <th scope="col">{ head }</th>
+                        }
+                    </tr></thead>
+                    <tbody>
+                        for (place, slot) in document.slots.iter().enumerate() {
+                            { row(document, board, place, slot, best) }
+                        }
+                    </tbody>
+                </table>
+            </div>
+            <p class="prose">
+                { "Gap is |incumbent − bound| / |incumbent|, with the best value known on this page as incumbent. \
+                   A bound is shown as checked only where exact arithmetic has confirmed it. \
+                   Node counts with + are of a search that is not finished." }
+            </p>
+            <p class="prose">
+                { "A plan that comes out of a model is a decision aid: the driving, working-time, energy and safety rules \
+                   of the place, and the people licensed to apply them, come first." }
+            </p>
+        </section>
+    }
+}
+
+fn row(document: &Document, board: &Board, place: usize, slot: &Slot, best: Option<f64>) -> Html {
+    let lane = board.lane(slot.id);
+    let size = |of: fn(&record::message::RivalReport) -> u32| {
+        lane.rival.as_ref().map_or_else(|| "–".to_owned(), |rival| count(u64::from(of(rival))))
+    };
+    let open = if lane.nodes() > 0 && !is_over(&lane) { "+" } else { "" };
+    let checked = match &lane.root {
+        Some(root) if root.checked => "yes",
+        Some(_) => "no",
+        None => "–",
+    };
+    html! {
+        <tr key={slot.id.0} class={format!("hue-{}", place % HUES)}>
+            <th scope="row"><span class="letter">{ Document::letter(place) }</span>{ " " }{ document.rival_title(&slot.rival) }</th>
+            <td>{ size(|rival| rival.rows) }</td>
+            <td>{ size(|rival| rival.columns) }</td>
+            <td>{ figure(lane.root_bound()) }</td>
+            <td>{ share(gap(best, lane.root_bound())) }</td>
+            <td>{ count(u64::from(lane.nodes())) }{ open }</td>
+            <td>{ figure(lane.bound()) }</td>
+            <td>{ figure(lane.incumbent()) }</td>
+            <td>{ checked }</td>
+        </tr>
+    }
+}

@@ -1,0 +1,226 @@
+//! One node in full: how it was reached, its bound, its relaxation drawn on the map, its values,
+//! and what it violates.
+
+use record::message::{NodeDetail, RivalReport, ViolatedSubset};
+use report::number::{full, of, short};
+use wasm_bindgen::JsCast;
+use web_sys::HtmlElement;
+use yew::prelude::*;
+
+use crate::state::board::{Board, Selection};
+use crate::state::document::{Accepted, Document};
+use crate::state::pointer::Shared;
+use crate::state::words::{branching, node_state};
+use crate::view::hands::use_hands;
+use crate::view::map::Map;
+use crate::view::rivals::HUES;
+use crate::view::values::Values;
+
+/// The id of its heading.
+const HEADING: &str = "node-heading";
+/// Violated sets and rows of a ray shown at most.
+const SHOWN: usize = 12;
+
+/// Leads the focus to the inspector.
+pub(crate) fn focus_inspector() {
+    let element = gloo_utils::document().get_element_by_id(HEADING);
+    if let Some(heading) = element.and_then(|element| element.dyn_into::<HtmlElement>().ok()) {
+        // A heading that takes no focus leaves it where it was.
+        let _ = heading.focus();
+    }
+}
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct InspectorProps {
+    pub(crate) document: Document,
+    pub(crate) board: Board,
+}
+
+/// The section.
+#[component]
+pub(crate) fn Inspector(props: &InspectorProps) -> Html {
+    let hands = use_hands();
+    let selection = props.board.selection;
+    let state = selection.and_then(|at| {
+        let tree = hands.as_ref()?.session.tree(at.lane)?;
+        let tree = tree.borrow();
+        Some(tree.nodes().get(tree.place(at.node)?)?.state)
+    });
+    use_effect_with((selection, state), move |(selection, _)| {
+        if let (Some(hands), Some(at)) = (hands, selection) {
+            hands.session.inspect(at.lane, at.node);
+        }
+    });
+    let Some(at) = selection else { return Html::default() };
+    let place = props.document.slots.iter().position(|slot| slot.id == at.lane);
+    let Some(place) = place else { return Html::default() };
+    html! {
+        <section
+            class={classes!("node", format!("hue-{}", place % HUES))} aria-labelledby={HEADING}
+            data-testid="inspector"
+        >
+            <h2 id={HEADING} tabindex="-1">{ heading(at, place) }</h2>
+            if let (Some(detail), Some(accepted)) = (props.board.detail.clone(), props.document.accepted.clone()) {
+                <Detail {detail} {accepted} rival={props.board.lane(at.lane).rival.clone()} />
+            } else {
+                <p class="soft">{ "Asking the worker for this node…" }</p>
+            }
+        </section>
+    }
+}
+
+fn heading(at: Selection, place: usize) -> String {
+    let root = if at.node.0 == 1 { ", the root" } else { "" };
+    format!("Node {} of {}{root}", at.node.0, Document::letter(place))
+}
+
+#[derive(Properties, PartialEq)]
+struct DetailProps {
+    detail: Shared<NodeDetail>,
+    accepted: Accepted,
+    rival: Option<Shared<RivalReport>>,
+}
+
+#[component]
+fn Detail(props: &DetailProps) -> Html {
+    let column = use_state_eq(|| None::<u32>);
+    let set = use_state_eq(|| None::<usize>);
+    let choose = {
+        let column = column.setter();
+        Callback::from(move |chosen: Option<u32>| column.set(chosen))
+    };
+    let (detail, report) = (&props.detail, &props.accepted.report);
+    let tint = set.and_then(|index| detail.violated.get(index)).map(|violated| {
+        let named = |label: &String| report.stops.iter().position(|stop| stop.label == *label);
+        Shared::new(violated.subset.iter().filter_map(named).collect::<Vec<usize>>())
+    });
+    let arcs = use_memo(detail.clone(), |detail| Shared::new(detail.arcs.clone()));
+    let show = {
+        let (set, shown) = (set.setter(), *set);
+        Callback::from(move |index: usize| set.set((shown != Some(index)).then_some(index)))
+    };
+    html! {
+        <div class="node-parts">
+            <div class="say">
+                <p>{ sentence(detail) }</p>
+                { bound(detail) }
+                { path(detail, props.rival.as_deref()) }
+                { violated(&detail.violated, *set, &show) }
+                { ray(detail) }
+            </div>
+            if !report.stops.is_empty() {
+                <figure class="drawing">
+                    <Map
+                        report={report.clone()} arcs={(*arcs).clone()} set={tint} column={*column}
+                        label="The relaxation's solution on the map; its values are in the table"
+                    />
+                    <figcaption class="soft">{ "Width is the value; dashed where fractional. A drive keeps to the right of its way." }</figcaption>
+                </figure>
+            }
+            <Values
+                detail={detail.clone()} rival={props.rival.clone()} unit={report.unit.clone()}
+                column={*column} {choose}
+            />
+        </div>
+    }
+}
+
+/// How the node stands, in a sentence.
+fn sentence(detail: &NodeDetail) -> String {
+    let fractional = detail.values.iter().filter(|value| value.fractional).count() as u64;
+    let depth = if detail.depth == 0 {
+        String::new()
+    } else {
+        format!(", {}", of(u64::from(detail.depth), "branching") + " deep")
+    };
+    let state = node_state(detail.state);
+    if detail.bound.is_none() {
+        return format!("This node is {state}{depth}.");
+    }
+    let whole = if fractional == 0 {
+        "every variable that must be whole is whole".to_owned()
+    } else {
+        format!(
+            "{} that must be whole {} not",
+            of(fractional, "variable"),
+            if fractional == 1 { "is" } else { "are" }
+        )
+    };
+    format!("This node is {state}{depth}: in its relaxation {whole}.")
+}
+
+fn bound(detail: &NodeDetail) -> Html {
+    let Some(bound) = detail.bound else { return Html::default() };
+    let checked = detail.checked_bound.as_ref().map_or_else(
+        || "not checked in exact arithmetic".to_owned(),
+        |exact| format!("checked exactly: {exact}"),
+    );
+    html! {
+        <p class="small">
+            { "Bound " }<b><data value={bound.to_string()} title={full(bound)} data-testid="node-bound">{ short(bound) }</data></b>
+            { ", " }<span class="exact" data-testid="node-checked">{ checked }</span>
+        </p>
+    }
+}
+
+fn path(detail: &NodeDetail, rival: Option<&RivalReport>) -> Html {
+    if detail.path.is_empty() {
+        return Html::default();
+    }
+    let columns = rival.map_or(&[][..], |rival| rival.column_names.as_slice());
+    html! {
+        <>
+            <h3>{ "Branchings from the root" }</h3>
+            <ol class="path small" data-testid="path">
+                for step in detail.path.iter() { <li>{ branching(step, columns) }</li> }
+            </ol>
+        </>
+    }
+}
+
+fn violated(sets: &[ViolatedSubset], shown: Option<usize>, show: &Callback<usize>) -> Html {
+    if sets.is_empty() {
+        return Html::default();
+    }
+    let press = |index: usize| {
+        let show = show.clone();
+        Callback::from(move |_: MouseEvent| show.emit(index))
+    };
+    let more = sets.len().saturating_sub(SHOWN) as u64;
+    html! {
+        <>
+            <h3>{ "Violated, though the model asks for it" }</h3>
+            <ul class="sets small" data-testid="violated">
+                for (index, set) in sets.iter().take(SHOWN).enumerate() {
+                    <li key={index}>
+                        <button type="button" class="link" onclick={press(index)}
+                            aria-pressed={if shown == Some(index) { "true" } else { "false" }}
+                        >{ set.subset.join(", ") }</button>
+                        { format!(": {} by {}", set.family, short(set.violation)) }
+                    </li>
+                }
+                if more > 0 { <li class="soft">{ format!("and {more} more") }</li> }
+            </ul>
+        </>
+    }
+}
+
+fn ray(detail: &NodeDetail) -> Html {
+    if detail.ray.is_empty() {
+        return Html::default();
+    }
+    html! {
+        <>
+            <h3>{ "Rows that prove it infeasible" }</h3>
+            <p class="small soft">{ "Added up with these multipliers they contradict the variables' bounds." }</p>
+            <ul class="sets small" data-testid="ray">
+                for (name, multiplier) in detail.ray.iter().take(SHOWN) {
+                    <li>{ format!("{} × {name}", short(*multiplier)) }</li>
+                }
+                if detail.ray.len() > SHOWN {
+                    <li class="soft">{ format!("and {} more", detail.ray.len() - SHOWN) }</li>
+                }
+            </ul>
+        </>
+    }
+}

@@ -1,0 +1,124 @@
+//! The instance: its drawing, what was understood of it, and the box it is pasted into.
+
+use gloo_timers::callback::Timeout;
+use yew::prelude::*;
+
+use crate::state::document::Document;
+use crate::state::pointer::Shared;
+use crate::view::complaints::Complaints;
+use crate::view::grid::Grid;
+use crate::view::hands::use_hands;
+use crate::view::map::Map;
+use crate::view::paste::Paste;
+
+/// Rest after typing before the text is read, in milliseconds.
+const REST: u32 = 250;
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct InstanceProps {
+    pub(crate) document: Document,
+}
+
+/// The section.
+#[component]
+pub(crate) fn Instance(props: &InstanceProps) -> Html {
+    let hands = use_hands();
+    let first = use_mut_ref(|| true);
+    use_effect_with(props.document.draft.clone(), move |draft| {
+        let rest = if std::mem::take(&mut *first.borrow_mut()) { 0 } else { REST };
+        let draft = draft.clone();
+        let timer = Timeout::new(rest, move || {
+            if let Some(hands) = hands {
+                hands.session.read(draft);
+            }
+        });
+        move || drop(timer)
+    });
+    let document = &props.document;
+    html! {
+        <section class="instance" aria-labelledby="instance-heading">
+            <h2 id="instance-heading">{ "Instance" }</h2>
+            <div class="instance-parts">
+                <Drawing document={document.clone()} />
+                <div>
+                    { facts(document) }
+                    if let Some(report) = &document.reading {
+                        <Complaints text={document.draft.clone()} report={report.clone()} />
+                    }
+                    <Paste draft={document.draft.clone()} broken={is_broken(document)} />
+                </div>
+            </div>
+        </section>
+    }
+}
+
+fn is_broken(document: &Document) -> bool {
+    document.reading.as_ref().is_some_and(|report| !report.usable)
+}
+
+/// What was understood; of the text in the box when it can be used, else of the last that could.
+fn facts(document: &Document) -> Html {
+    let broken = is_broken(document);
+    let report = if broken { document.reading.as_ref() } else { None };
+    let report = report.or(document.accepted.as_ref().map(|accepted| &accepted.report));
+    let Some(report) = report else {
+        return html! { <p class="soft" data-testid="report">{ "Reading the instance…" }</p> };
+    };
+    html! {
+        <>
+            <ul class="facts" data-testid="report">
+                for fact in report.facts.iter() {
+                    <li>{ fact.clone() }</li>
+                }
+            </ul>
+            if broken && document.accepted.is_some() {
+                <p class="warn">
+                    { "This text gives no instance yet. The drawing and the rivals are still those of the last one that did." }
+                </p>
+            }
+        </>
+    }
+}
+
+#[component]
+fn Drawing(props: &InstanceProps) -> Html {
+    let values = use_state_eq(|| false);
+    let Some(accepted) = props.document.accepted.clone() else {
+        return html! { <figure class="drawing empty" /> };
+    };
+    let report = accepted.report;
+    let choose = |shown: bool| {
+        let values = values.setter();
+        Callback::from(move |_: MouseEvent| values.set(shown))
+    };
+    let switch = |name: &'static str, shown: bool| {
+        let pressed = if *values == shown { "true" } else { "false" };
+        html! { <button type="button" aria-pressed={pressed} onclick={choose(shown)}>{ name }</button> }
+    };
+    let has_map = !report.stops.is_empty();
+    let caption = if *values || !has_map {
+        "Darker is longer."
+    } else if report.places_computed {
+        "Places computed from the distances."
+    } else {
+        "Places as given."
+    };
+    html! {
+        <figure class="drawing" data-testid="drawing">
+            if *values || !has_map {
+                <Grid {report} />
+            } else {
+                <Map {report} arcs={Shared::new(Vec::new())} label="Map of the stops" />
+            }
+            <figcaption class="under">
+                <span class="soft">{ caption }</span>
+                if has_map {
+                    <span class="switch" role="group" aria-label="Drawing">
+                        { switch("Map", false) }
+                        { switch("Values", true) }
+                    </span>
+                }
+            </figcaption>
+        </figure>
+    }
+}

@@ -1,0 +1,256 @@
+//! A rival's lane: on the left its name, size, families, figures and buttons; on the right its
+//! bound ruler and its tree on the shared axis.
+
+use record::event::NodeNumber;
+use record::message::{LaneJob, RivalReport};
+use record::results::ErrorReport;
+use record::scenario::{InstanceText, Run};
+use report::axis::Axis;
+use report::number::{count, of};
+use yew::prelude::*;
+
+use crate::state::board::{BoardAction, Selection};
+use crate::state::document::{DocumentAction, Slot};
+use crate::state::lane::{Lane, Phase};
+use crate::state::pointer::Shared;
+use crate::state::words::status;
+use crate::view::canvas::TreeCanvas;
+use crate::view::families::Families;
+use crate::view::figure::{figure, gap, share};
+use crate::view::hands::{Hands, use_hands};
+use crate::view::inspector::focus_inspector;
+use crate::view::paint::Scene;
+use crate::view::ruler::Ruler;
+use crate::view::twin::Twin;
+
+/// Height of a tree in pixels.
+const HEIGHT: f64 = 136.0;
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct LaneProps {
+    pub(crate) slot: Slot,
+    pub(crate) letter: String,
+    pub(crate) hue: usize,
+    pub(crate) title: String,
+    pub(crate) lane: Shared<Lane>,
+    pub(crate) text: Option<Shared<InstanceText>>,
+    pub(crate) run: Shared<Run>,
+    pub(crate) seed: u64,
+    pub(crate) axis: Option<Axis>,
+    pub(crate) width: f64,
+    pub(crate) best: Option<f64>,
+    pub(crate) selected: Option<NodeNumber>,
+}
+
+/// The lane.
+#[component]
+pub(crate) fn LaneView(props: &LaneProps) -> Html {
+    let hands = use_hands();
+    use_loading(props, hands.clone());
+    html! {
+        <section
+            class={classes!("lane", format!("hue-{}", props.hue))} data-testid="lane"
+            data-lane={props.letter.clone()} aria-label={format!("{}, {}", props.letter, props.title)}
+        >
+            <div class="lane-side">
+                <h3><span class="letter">{ props.letter.clone() }</span><span>{ props.title.clone() }</span></h3>
+                if let Some(rival) = &props.lane.rival {
+                    <p class="small soft" data-testid="size">{ size(rival) }</p>
+                    <Families slot={props.slot.clone()} rival={rival.clone()} />
+                }
+                { figures(props) }
+                <p class="small" data-testid="status">{ status(&props.lane) }</p>
+                if !props.lane.notice.is_empty() {
+                    <p class="small warn" data-testid="notice">{ props.lane.notice.clone() }</p>
+                }
+                if let Some(error) = &props.lane.error { { failure(error) } }
+                if let Some(hands) = &hands { { buttons(props, hands) } }
+            </div>
+            <div class="lane-drawing">
+                if let Some(hands) = &hands { { drawing(props, hands) } }
+            </div>
+        </section>
+    }
+}
+
+/// Loads the rival when it, or the instance, is another; ends its worker when the lane goes.
+#[hook]
+fn use_loading(props: &LaneProps, hands: Option<Hands>) {
+    let id = props.slot.id;
+    let session = hands.map(|hands| hands.session);
+    let (run, seed, rival) = (props.run.clone(), props.seed, props.slot.rival.clone());
+    {
+        let session = session.clone();
+        use_effect_with((props.text.clone(), rival), move |(text, rival)| {
+            if let (Some(session), Some(text)) = (session, text) {
+                let job = LaneJob {
+                    instance: Some((**text).clone()),
+                    rival: (**rival).clone(),
+                    settings: (*run).clone(),
+                    seed,
+                    ..LaneJob::default()
+                };
+                session.load(id, job);
+            }
+        });
+    }
+    use_effect_with((), move |()| {
+        move || {
+            if let Some(session) = session {
+                session.remove(id);
+            }
+        }
+    });
+}
+
+fn size(rival: &RivalReport) -> String {
+    let whole = if rival.integer_columns == rival.columns {
+        "all whole".to_owned()
+    } else {
+        format!("{} whole", count(u64::from(rival.integer_columns)))
+    };
+    format!(
+        "{} · {} ({whole}) · {}",
+        of(u64::from(rival.rows), "row"),
+        of(u64::from(rival.columns), "column"),
+        of(rival.nonzeros, "coefficient")
+    )
+}
+
+fn figures(props: &LaneProps) -> Html {
+    let lane = &props.lane;
+    let Some(root) = &lane.root else { return Html::default() };
+    let mark = if root.checked { "checked" } else { "not checked" };
+    let exact = root.checked_bound.clone().map(|exact| format!("exactly {exact}"));
+    html! {
+        <dl class="figures">
+            <div>
+                <dt>{ "root bound" }</dt>
+                <dd><span data-testid="root-bound">{ figure(root.bound) }</span>
+                <small class="soft" data-testid="checked" title={exact}>{ mark }</small></dd>
+            </div>
+            <div>
+                <dt>{ "root gap" }</dt>
+                <dd data-testid="root-gap">{ share(gap(props.best, root.bound)) }</dd>
+            </div>
+            <div>
+                <dt>{ "bound now" }</dt>
+                <dd data-testid="bound">{ figure(lane.bound()) }</dd>
+            </div>
+            <div>
+                <dt>{ "nodes" }</dt>
+                <dd data-testid="nodes">{ count(u64::from(lane.nodes())) }</dd>
+            </div>
+        </dl>
+    }
+}
+
+fn failure(error: &ErrorReport) -> Html {
+    html! {
+        <div class="complaints small" data-testid="failure">
+            <p><b>{ "Not run: " }</b>{ error.message.clone() }</p>
+            if !error.complaints.is_empty() {
+                <ul>
+                    for complaint in error.complaints.iter().take(6) {
+                        <li>
+                            { format!("{} line {}: {}", error.place, complaint.line, complaint.message) }
+                            if !complaint.mend.is_empty() { { " " }<span class="mend">{ complaint.mend.clone() }</span> }
+                        </li>
+                    }
+                </ul>
+            }
+        </div>
+    }
+}
+
+/// A button that stays where it is, and keeps the focus, while it can do nothing.
+fn button(name: &'static str, able: bool, press: Callback<MouseEvent>) -> Html {
+    let onclick = if able { press } else { Callback::noop() };
+    let disabled = if able { "false" } else { "true" };
+    html! {
+        <button type="button" data-testid={name.to_lowercase()} aria-disabled={disabled} {onclick}>{ name }</button>
+    }
+}
+
+fn buttons(props: &LaneProps, hands: &Hands) -> Html {
+    let (id, phase) = (props.slot.id, props.lane.phase);
+    let act = |then: fn(&Hands, Selection)| {
+        let hands = hands.clone();
+        Callback::from(move |_: MouseEvent| {
+            then(&hands, Selection { lane: id, node: NodeNumber(1) });
+        })
+    };
+    let over = is_over(&props.lane);
+    let run: fn(&Hands, Selection) = match phase {
+        Phase::Done | Phase::Failed => |hands, at| hands.session.search_anew(at.lane),
+        _ => |hands, at| hands.session.search(at.lane, None),
+    };
+    let remove = format!("Remove {}, {}", props.letter, props.title);
+    html! {
+        <div class="acts" role="group" aria-label={format!("Run of {}", props.letter)}>
+            { button("Run", phase.can_go_on() || (!over && matches!(phase, Phase::Done | Phase::Failed)), act(run)) }
+            { button("Pause", phase == Phase::Running, act(|hands, at| hands.session.pause(at.lane))) }
+            { button("Step", phase.can_go_on(), act(|hands, at| hands.session.search(at.lane, Some(1)))) }
+            { button("Stop", phase.can_stop(), act(|hands, at| hands.session.stop(at.lane))) }
+            <button type="button" class="aside" data-testid="remove" aria-label={remove}
+                onclick={act(|hands, at| hands.document.dispatch(DocumentAction::Remove(at.lane)))}
+            >{ "Remove" }</button>
+        </div>
+    }
+}
+
+/// Whether there is nothing left to search.
+pub(crate) fn is_over(lane: &Lane) -> bool {
+    use record::results::Status;
+    let ended = |status: Status| !matches!(status, Status::Limit | Status::Error);
+    lane.phase == Phase::Done && lane.search.as_ref().is_some_and(|search| ended(search.status))
+}
+
+fn drawing(props: &LaneProps, hands: &Hands) -> Html {
+    let id = props.slot.id;
+    let (Some(axis), Some(tree)) = (props.axis, hands.session.tree(id)) else {
+        return Html::default();
+    };
+    if props.width <= 0.0 {
+        return Html::default();
+    }
+    let board = hands.board.clone();
+    let select = Callback::from(move |node: NodeNumber| {
+        board.dispatch(BoardAction::Select(Selection { lane: id, node }));
+    });
+    let lane = &props.lane;
+    let selected = props.selected.and_then(|node| tree.borrow().place(node));
+    let scene = Scene {
+        axis,
+        width: props.width,
+        height: HEIGHT,
+        best: props.best,
+        root: lane.root_bound(),
+        now: lane.bound(),
+        selected,
+    };
+    html! {
+        <>
+            if let Some(root) = lane.root_bound() {
+                <Ruler {axis} width={props.width} {root} now={lane.bound()} best={props.best} />
+            }
+            <TreeCanvas
+                tree={tree.clone()} version={lane.tally.version} {scene} label={label(props)}
+                select={select.clone()} open={Callback::from(|()| focus_inspector())}
+            />
+            <Twin
+                {tree} version={lane.tally.version} made={lane.tally.made} letter={props.letter.clone()}
+                rival={lane.rival.clone()} {selected} {select}
+            />
+        </>
+    }
+}
+
+fn label(props: &LaneProps) -> String {
+    let nodes = of(u64::from(props.lane.tally.made), "node");
+    let at = props.selected.map_or_else(String::new, |node| format!("; node {} selected", node.0));
+    format!(
+        "Search tree of {}: {nodes}{at}. Arrow keys move among nodes, Enter opens.",
+        props.letter
+    )
+}

@@ -1,0 +1,173 @@
+//! The map: stops with names that do not collide, and a solution's arcs between them, as wide as
+//! their value and dashed where it is fractional. Laid out for the width there is, so that names
+//! keep their size.
+
+use record::message::{Arc, InstanceReport};
+use report::labels::{Placed, Wish, place};
+use report::map::{Curve, Frame, Point, fit, hull};
+use report::number::short;
+use yew::prelude::*;
+
+use crate::browser::size::use_width;
+use crate::state::pointer::Shared;
+
+/// Size of names in pixels.
+const SIZE: f64 = 11.0;
+/// Radius of a stop's mark, and of the first one's.
+const RADIUS: f64 = 3.0;
+const FIRST: f64 = 5.0;
+/// Beyond this many stops names are left to the marks' titles.
+const NAMED: usize = 150;
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct MapProps {
+    pub(crate) report: Shared<InstanceReport>,
+    pub(crate) arcs: Shared<Vec<Arc>>,
+    /// What it shows, for those who do not see it.
+    pub(crate) label: AttrValue,
+    /// A set of stops to tint.
+    #[prop_or_default]
+    pub(crate) set: Option<Shared<Vec<usize>>>,
+    /// The column of the arc to name.
+    #[prop_or_default]
+    pub(crate) column: Option<u32>,
+}
+
+/// Places of stops and names in pixels.
+#[derive(Debug, PartialEq)]
+struct Places {
+    frame: Frame,
+    stops: Vec<Point>,
+    names: Vec<Option<Placed>>,
+}
+
+/// The map.
+#[component]
+pub(crate) fn Map(props: &MapProps) -> Html {
+    let node = use_node_ref();
+    let width = use_width(&node);
+    let places = use_memo((props.report.clone(), width as u32), |(report, width)| {
+        places(report, f64::from(*width))
+    });
+    html! {
+        <div class="map" ref={node}>
+            if width > 0.0 {
+                <svg
+                    width={width.to_string()} height={places.frame.height.to_string()}
+                    role="img" aria-label={props.label.clone()}
+                >
+                    { tinted(props, &places) }
+                    for arc in props.arcs.iter() { { arc_path(arc, &places, props.column) } }
+                    { stops(&props.report, &places) }
+                    { chosen(props, &places) }
+                </svg>
+            }
+        </div>
+    }
+}
+
+fn places(report: &InstanceReport, width: f64) -> Places {
+    let height = if width * 0.66 < 380.0 { width * 0.66 } else { 380.0 };
+    let frame = Frame { width, height, margin: 26.0 };
+    let given: Vec<Point> = report.stops.iter().map(|stop| (stop.x, stop.y)).collect();
+    let stops = fit(&given, frame);
+    let wishes: Vec<Wish<'_>> = report
+        .stops
+        .iter()
+        .zip(&stops)
+        .enumerate()
+        .map(|(index, (stop, &at))| Wish { text: &stop.label, at, radius: radius(index) })
+        .collect();
+    let names =
+        if wishes.len() <= NAMED { place(&wishes, frame, SIZE) } else { vec![None; wishes.len()] };
+    Places { frame, stops, names }
+}
+
+fn radius(index: usize) -> f64 {
+    if index == 0 { FIRST } else { RADIUS }
+}
+
+fn stops(report: &InstanceReport, places: &Places) -> Html {
+    html! {
+        <>
+            for (index, (stop, &(x, y))) in report.stops.iter().zip(&places.stops).enumerate() {
+                <circle key={index} class="stop" cx={px(x)} cy={px(y)} r={radius(index).to_string()}>
+                    <title>{ stop.label.clone() }</title>
+                </circle>
+            }
+            for (stop, name) in report.stops.iter().zip(&places.names) {
+                if let Some(name) = name {
+                    if let Some((from, to)) = name.leader {
+                        <line class="leader" x1={px(from.0)} y1={px(from.1)} x2={px(to.0)} y2={px(to.1)} />
+                    }
+                    <text class="name" x={px(name.x)} y={px(name.y)}>{ stop.label.clone() }</text>
+                }
+            }
+        </>
+    }
+}
+
+fn arc_path(arc: &Arc, places: &Places, column: Option<u32>) -> Html {
+    let Some(curve) = curve(arc, places) else { return Html::default() };
+    let chosen = column == Some(arc.column);
+    let class = classes!(
+        "arc",
+        is_fractional(arc.value).then_some("fractional"),
+        chosen.then_some("chosen")
+    );
+    let size = if arc.value < 1.0 { arc.value } else { 1.0 };
+    let width = px(0.8 + 2.4 * size);
+    html! {
+        <g key={arc.column} {class}>
+            <path d={path(&curve)} stroke-width={width} />
+            if let Some([a, b, c]) = curve.arrow(3.0 + 2.0 * size) {
+                <polygon points={points(&[a, b, c])} />
+            }
+        </g>
+    }
+}
+
+/// The name of the chosen arc, over everything else.
+fn chosen(props: &MapProps, places: &Places) -> Html {
+    let found = props.arcs.iter().find(|arc| props.column == Some(arc.column));
+    let Some((arc, curve)) = found.and_then(|arc| Some((arc, curve(arc, places)?))) else {
+        return Html::default();
+    };
+    let (x, y) = curve.at(0.5);
+    html! { <text class="name value" x={px(x)} y={px(y - 6.0)} text-anchor="middle">{ short(arc.value) }</text> }
+}
+
+fn tinted(props: &MapProps, places: &Places) -> Html {
+    let Some(set) = &props.set else { return Html::default() };
+    let inside: Vec<Point> =
+        set.iter().filter_map(|&stop| places.stops.get(stop).copied()).collect();
+    html! { <polygon class="tint" points={points(&hull(&inside))} /> }
+}
+
+fn curve(arc: &Arc, places: &Places) -> Option<Curve> {
+    let from = places.stops.get(arc.from as usize)?;
+    let to = places.stops.get(arc.to as usize)?;
+    Some(Curve::between(*from, *to))
+}
+
+/// Whether a value differs from a whole number by more than the tolerance of the search.
+fn is_fractional(value: f64) -> bool {
+    (value - value.round()).abs() > 1e-6
+}
+
+fn path(curve: &Curve) -> String {
+    let (from, control, to) = (curve.from, curve.control, curve.to);
+    let parts = [px(from.0), px(from.1), px(control.0), px(control.1), px(to.0), px(to.1)];
+    let [a, b, c, d, e, f] = parts;
+    ["M", &a, " ", &b, "Q", &c, " ", &d, " ", &e, " ", &f].concat()
+}
+
+fn points(points: &[Point]) -> String {
+    let pairs: Vec<String> = points.iter().map(|&(x, y)| [px(x), px(y)].join(",")).collect();
+    pairs.join(" ")
+}
+
+/// A pixel measure with one decimal.
+pub(crate) fn px(value: f64) -> String {
+    ((value * 10.0).round() / 10.0).to_string()
+}

@@ -1,0 +1,205 @@
+//! The rivals: one lane each under one shared axis.
+
+use report::axis::Axis;
+use report::number::short;
+use web_sys::HtmlSelectElement;
+use yew::prelude::*;
+
+use crate::browser::size::use_width;
+use crate::state::board::Board;
+use crate::state::document::{Document, DocumentAction};
+use crate::state::lane::Phase;
+use crate::state::pointer::Shared;
+use crate::view::axis::{AxisView, Best};
+use crate::view::hands::{Hands, use_hands};
+use crate::view::lane::LaneView;
+
+/// Hues, after which they come again.
+pub(crate) const HUES: usize = 6;
+
+/// Pixels of axis a labelled tick wants.
+const TICK: f64 = 110.0;
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct RivalsProps {
+    pub(crate) document: Document,
+    pub(crate) board: Board,
+}
+
+/// The section.
+#[component]
+pub(crate) fn Rivals(props: &RivalsProps) -> Html {
+    let hands = use_hands();
+    let node = use_node_ref();
+    let width = use_width(&node);
+    let (document, board) = (&props.document, &props.board);
+    let best = best(document, board);
+    let domain = board.domain(best.as_ref().map(|best| best.value));
+    let axis = domain.map(|(low, high)| Axis::fit(low, high, (width / TICK) as u32));
+    html! {
+        <section class="rivals" aria-labelledby="rivals-heading">
+            <div class="heading">
+                <h2 id="rivals-heading">{ heading(document) }</h2>
+                if let Some(hands) = &hands { { for_all(document, board, hands) } }
+            </div>
+            <div class="axis-row">
+                <div ref={node} class="axis-place">
+                    if let Some(axis) = axis { if width > 0.0 { <AxisView {axis} {width} best={best.clone()} /> } }
+                </div>
+            </div>
+            for (place, slot) in document.slots.iter().enumerate() {
+                <LaneView
+                    key={slot.id.0} slot={slot.clone()} letter={Document::letter(place)}
+                    hue={place % HUES} title={document.rival_title(&slot.rival)}
+                    lane={board.lane(slot.id)} run={document.run.clone()} seed={document.seed}
+                    text={document.accepted.as_ref().map(|accepted| accepted.text.clone())}
+                    {axis} {width} best={best.as_ref().map(|best| best.value)}
+                    selected={board.selection.filter(|at| at.lane == slot.id).map(|at| at.node)}
+                />
+            }
+            <Key />
+            <AddRival catalogue={document.catalogue.clone()} />
+        </section>
+    }
+}
+
+fn heading(document: &Document) -> String {
+    let unit = document.accepted.as_ref().map_or("", |accepted| accepted.report.unit.as_str());
+    if unit.is_empty() {
+        "Rivals, by the bound that their relaxations give".to_owned()
+    } else {
+        format!("Rivals, by the {unit} that their relaxations allow")
+    }
+}
+
+/// The best known value: the best of all lanes, or the one the scenario gives.
+fn best(document: &Document, board: &Board) -> Option<Best> {
+    let given = document.run.best_known;
+    let found = board.best();
+    match (found, given) {
+        (Some(found), Some(given)) if found != given && board.is_better(given, found) => {
+            Some(Best { value: given, whose: "given".to_owned() })
+        }
+        (Some(value), _) => Some(Best { value, whose: finders(document, board, value) }),
+        (None, Some(value)) => Some(Best { value, whose: "given".to_owned() }),
+        (None, None) => None,
+    }
+}
+
+/// The best known value alone.
+pub(crate) fn best_value(document: &Document, board: &Board) -> Option<f64> {
+    best(document, board).map(|best| best.value)
+}
+
+/// "proved by C", else "found by A, C".
+fn finders(document: &Document, board: &Board, value: f64) -> String {
+    let with = |wanted: fn(&crate::state::lane::Lane) -> bool| {
+        let letters: Vec<String> = document
+            .slots
+            .iter()
+            .enumerate()
+            .filter(|(_, slot)| {
+                let lane = board.lane(slot.id);
+                wanted(&lane) && lane.incumbent().map(short) == Some(short(value))
+            })
+            .map(|(place, _)| Document::letter(place))
+            .collect();
+        letters.join(", ")
+    };
+    let proved = with(crate::view::lane::is_over);
+    if proved.is_empty() {
+        format!("found by {}", with(|_| true))
+    } else {
+        format!("proved by {proved}")
+    }
+}
+
+fn for_all(document: &Document, board: &Board, hands: &Hands) -> Html {
+    let lanes = document.slots.iter().map(|slot| (slot.id, board.lane(slot.id).phase));
+    let phases: Shared<Vec<_>> = Shared::new(lanes.collect());
+    let run = {
+        let (phases, session) = (phases.clone(), hands.session.clone());
+        Callback::from(move |_: MouseEvent| {
+            for &(id, phase) in phases.iter() {
+                match phase {
+                    Phase::Loading => session.search_when_ready(id),
+                    phase if phase.can_go_on() => session.search(id, None),
+                    _ => {}
+                }
+            }
+        })
+    };
+    let stop = {
+        let session = hands.session.clone();
+        Callback::from(move |_: MouseEvent| {
+            for &(id, _) in phases.iter().filter(|(_, phase)| phase.can_stop()) {
+                session.stop(id);
+            }
+        })
+    };
+    html! {
+        <div class="acts" role="group" aria-label="All rivals">
+            <button type="button" data-testid="run-all" onclick={run}>{ "Run all" }</button>
+            <button type="button" data-testid="stop-all" onclick={stop}>{ "Stop all" }</button>
+        </div>
+    }
+}
+
+/// The marks in words.
+#[component]
+fn Key() -> Html {
+    let item = |shape: Html, words: &'static str| {
+        html! {
+            <li><svg width="14" height="14" viewBox="0 0 14 14" aria-hidden="true">{ shape }</svg>{ words }</li>
+        }
+    };
+    html! {
+        <ul class="key small soft">
+            { item(html! { <circle class="full" cx="7" cy="7" r="3" /> }, "branched") }
+            { item(html! { <circle class="ring" cx="7" cy="7" r="3.5" /> }, "open") }
+            { item(html! { <path class="full" d="M7 2l5 5-5 5-5-5z" /> }, "integer") }
+            { item(html! { <path class="ring" d="M4 4l6 6M4 10l6-6" /> }, "infeasible") }
+            { item(html! { <path class="ring" d="M7 3v8" /> }, "pruned by bound") }
+            <li>{ "A node stands at its own bound, or its parent's where it has none. The nearer to the best known value, the stronger." }</li>
+        </ul>
+    }
+}
+
+#[derive(Properties, PartialEq)]
+struct AddProps {
+    catalogue: Shared<Vec<record::message::CatalogueEntry>>,
+}
+
+#[component]
+fn AddRival(props: &AddProps) -> Html {
+    let hands = use_hands();
+    let select = use_node_ref();
+    if props.catalogue.is_empty() {
+        return Html::default();
+    }
+    let add = {
+        let select = select.clone();
+        Callback::from(move |_: MouseEvent| {
+            let chosen = select.cast::<HtmlSelectElement>().map(|select| select.value());
+            if let (Some(hands), Some(id)) = (&hands, chosen) {
+                hands.document.dispatch(DocumentAction::Add(id));
+            }
+        })
+    };
+    html! {
+        <div class="row add">
+            <label class="field">
+                { "Another rival" }
+                <select ref={select} data-testid="catalogue">
+                    for entry in props.catalogue.iter() {
+                        <option value={entry.id.clone()} title={entry.citation.clone()}>
+                            { entry.title.clone() }
+                            if entry.relaxation { { " (relaxation)" } }
+                        </option>
+                    }
+                </select>
+            </label>
+            <button type="button" data-testid="add" onclick={add}>{ "Add" }</button>
+        </div>
+    }
+}

@@ -1,0 +1,269 @@
+//! The text twin of a tree: the same nodes as a list, with the keys of a tree. Only the rows in
+//! view are in the document.
+
+use std::collections::BTreeSet;
+
+use record::event::NodeNumber;
+use record::message::RivalReport;
+use report::number::{of, short};
+use wasm_bindgen::JsCast;
+use web_sys::HtmlElement;
+use yew::prelude::*;
+
+use crate::browser::run::TreeCell;
+use crate::state::outline::{Row, rows};
+use crate::state::pointer::Shared;
+use crate::state::tree::Tree;
+use crate::state::words::{branching, node_state};
+use crate::view::inspector::focus_inspector;
+
+/// Height of a row, as the style sheet has it, and rows in view.
+const ROW: i32 = 28;
+const VIEW: usize = 10;
+/// Rows kept in the document above and below the view.
+const SPARE: usize = 4;
+/// Deepest indentation.
+const DEEPEST: u32 = 12;
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct TwinProps {
+    pub(crate) tree: TreeCell,
+    pub(crate) version: u64,
+    pub(crate) made: u32,
+    pub(crate) letter: String,
+    pub(crate) rival: Option<Shared<RivalReport>>,
+    pub(crate) selected: Option<usize>,
+    pub(crate) select: Callback<NodeNumber>,
+}
+
+/// The twin, folded away until it is opened.
+#[component]
+pub(crate) fn Twin(props: &TwinProps) -> Html {
+    let open = use_state_eq(|| false);
+    let ontoggle = {
+        let open = open.setter();
+        Callback::from(move |event: Event| {
+            let element: web_sys::Element = event.target_unchecked_into();
+            open.set(element.has_attribute("open"));
+        })
+    };
+    let nodes = of(u64::from(props.made), "node");
+    html! {
+        <details class="twin small" data-testid="twin" {ontoggle}>
+            <summary>{ format!("{nodes} as a list") }</summary>
+            if *open { <List ..props.copy() /> }
+        </details>
+    }
+}
+
+impl TwinProps {
+    fn copy(&self) -> Self {
+        Self {
+            tree: self.tree.clone(),
+            version: self.version,
+            made: self.made,
+            letter: self.letter.clone(),
+            rival: self.rival.clone(),
+            selected: self.selected,
+            select: self.select.clone(),
+        }
+    }
+}
+
+/// What a key does in the list.
+#[derive(Debug, PartialEq, Eq)]
+enum Move {
+    Select(usize),
+    Fold(usize),
+    Unfold(usize),
+    Open,
+    Stay,
+}
+
+#[component]
+fn List(props: &TwinProps) -> Html {
+    let frame = use_node_ref();
+    let folded = use_state(|| Shared::new(BTreeSet::<usize>::new()));
+    let top = use_state_eq(|| 0_usize);
+    let key = (props.tree.clone(), props.version, (*folded).clone());
+    let rows = use_memo(key, |(tree, _, folded)| rows(&tree.borrow(), folded));
+    let first = top.saturating_sub(SPARE);
+    let last = (*top + VIEW + SPARE).min(rows.len());
+    {
+        let frame = frame.clone();
+        use_effect_with((first, rows.len()), move |&(first, count)| {
+            stretch(&frame, first, count);
+        });
+    }
+    let onscroll = {
+        let top = top.setter();
+        Callback::from(move |event: Event| {
+            let element: web_sys::Element = event.target_unchecked_into();
+            top.set((element.scroll_top() / ROW).max(0) as usize);
+        })
+    };
+    let onkeydown = {
+        let (tree, select, selected) = (props.tree.clone(), props.select.clone(), props.selected);
+        let (rows, shut, set) = (rows.clone(), (*folded).clone(), folded.setter());
+        let frame = frame.clone();
+        Callback::from(move |event: KeyboardEvent| {
+            let step = step(&rows, &tree.borrow(), &shut, selected, &event.key());
+            let Some(step) = step else { return };
+            event.prevent_default();
+            match step {
+                Move::Select(place) => {
+                    reveal(&frame, &rows, place);
+                    select.emit(Tree::number(place));
+                }
+                Move::Fold(place) => set.set(changed(&shut, place, true)),
+                Move::Unfold(place) => set.set(changed(&shut, place, false)),
+                Move::Open => focus_inspector(),
+                Move::Stay => {}
+            }
+        })
+    };
+    let active = props
+        .selected
+        .filter(|place| rows[first.min(last)..last].iter().any(|row| row.place == *place));
+    let tree = props.tree.borrow();
+    html! {
+        <div
+            ref={frame} class="list" role="tree" tabindex="0" {onscroll} {onkeydown}
+            aria-label={format!("Nodes of {}", props.letter)}
+            aria-activedescendant={active.map(|place| row_id(&props.letter, place))}
+        >
+            <div class="before" role="none" />
+            for row in rows[first.min(last)..last].iter() { { item(props, &tree, &folded, *row) } }
+            <div class="after" role="none" />
+        </div>
+    }
+}
+
+fn row_id(letter: &str, place: usize) -> String {
+    format!("node-{letter}-{}", place + 1)
+}
+
+fn item(props: &TwinProps, tree: &Tree, folded: &BTreeSet<usize>, row: Row) -> Html {
+    let place = row.place;
+    let Some(node) = tree.nodes().get(place) else { return Html::default() };
+    let chosen = props.selected == Some(place);
+    let parent = tree.first_child(place).is_some();
+    let expanded = parent.then(|| if folded.contains(&place) { "false" } else { "true" });
+    let columns = props.rival.as_ref().map_or(&[][..], |rival| rival.column_names.as_slice());
+    let made_by =
+        node.branching.as_ref().map_or_else(|| "root".to_owned(), |by| branching(by, columns));
+    let bound =
+        if node.own_bound { node.stand.map_or_else(String::new, short) } else { String::new() };
+    let select = props.select.clone();
+    let onclick = Callback::from(move |_: MouseEvent| select.emit(Tree::number(place)));
+    html! {
+        <div
+            key={place} id={row_id(&props.letter, place)} role="treeitem" {onclick}
+            class={classes!("item", format!("depth-{}", node.depth.min(DEEPEST)))}
+            aria-level={(node.depth + 1).to_string()} aria-setsize={row.siblings.to_string()}
+            aria-posinset={row.rank.to_string()} aria-expanded={expanded}
+            aria-selected={if chosen { "true" } else { "false" }}
+        >
+            <span class="by">{ format!("{} {made_by}", place + 1) }</span>
+            <span class="soft">{ node_state(node.state) }</span>
+            <span class="value">{ bound }</span>
+        </div>
+    }
+}
+
+fn changed(folded: &BTreeSet<usize>, place: usize, fold: bool) -> Shared<BTreeSet<usize>> {
+    let mut folded = folded.clone();
+    if fold {
+        folded.insert(place);
+    } else {
+        folded.remove(&place);
+    }
+    Shared::new(folded)
+}
+
+/// What a key does; `None` for a key that is not for the list.
+fn step(
+    rows: &[Row],
+    tree: &Tree,
+    folded: &BTreeSet<usize>,
+    selected: Option<usize>,
+    key: &str,
+) -> Option<Move> {
+    let here = selected.and_then(|place| rows.iter().position(|row| row.place == place));
+    let select = |index: Option<usize>| {
+        index.and_then(|index| rows.get(index)).map_or(Move::Stay, |row| Move::Select(row.place))
+    };
+    let arrow = key.starts_with("Arrow");
+    let Some(here) = here else { return (arrow || key == "Home").then(|| select(Some(0))) };
+    let place = rows[here].place;
+    let child = tree.first_child(place);
+    match key {
+        "ArrowDown" => Some(select(Some(here + 1))),
+        "ArrowUp" => Some(select(here.checked_sub(1))),
+        "Home" => Some(select(Some(0))),
+        "End" => Some(select(rows.len().checked_sub(1))),
+        "ArrowRight" if folded.contains(&place) => Some(Move::Unfold(place)),
+        "ArrowRight" => Some(child.map_or(Move::Stay, Move::Select)),
+        "ArrowLeft" if child.is_some() && !folded.contains(&place) => Some(Move::Fold(place)),
+        "ArrowLeft" => Some(tree.parent(place).map_or(Move::Stay, Move::Select)),
+        "Enter" => Some(Move::Open),
+        _ => None,
+    }
+}
+
+/// Gives the two spacers the height of the rows that are not in the document.
+fn stretch(frame: &NodeRef, first: usize, count: usize) {
+    let Some(frame) = frame.cast::<HtmlElement>() else { return };
+    let shown = (count.saturating_sub(first)).min(VIEW + 2 * SPARE);
+    let after = count.saturating_sub(first + shown);
+    for (class, rows) in [(".before", first), (".after", after)] {
+        let spacer = frame.query_selector(class).ok().flatten();
+        if let Some(spacer) = spacer.and_then(|spacer| spacer.dyn_into::<HtmlElement>().ok()) {
+            let height = [(rows * ROW as usize).to_string().as_str(), "px"].concat();
+            // A spacer without its height leaves the list shorter, not wrong.
+            let _ = spacer.style().set_property("height", &height);
+        }
+    }
+}
+
+/// Scrolls the list so that a node's row is in view.
+fn reveal(frame: &NodeRef, rows: &[Row], place: usize) {
+    let Some(frame) = frame.cast::<HtmlElement>() else { return };
+    let Some(index) = rows.iter().position(|row| row.place == place) else { return };
+    let (from, height) = (index as i32 * ROW, frame.client_height());
+    if from < frame.scroll_top() {
+        frame.set_scroll_top(from);
+    } else if from + ROW > frame.scroll_top() + height {
+        frame.set_scroll_top(from + ROW - height);
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::state::tree::tests::small;
+
+    fn press(folded: &[usize], selected: Option<usize>, key: &str) -> Option<Move> {
+        let tree = small();
+        let folded = folded.iter().copied().collect();
+        step(&rows(&tree, &folded), &tree, &folded, selected, key)
+    }
+
+    #[test]
+    fn arrows_follow_the_rows() {
+        assert_eq!(press(&[], None, "ArrowDown"), Some(Move::Select(0)));
+        assert_eq!(press(&[], Some(0), "ArrowDown"), Some(Move::Select(1)));
+        assert_eq!(press(&[], Some(2), "ArrowDown"), Some(Move::Stay));
+        assert_eq!(press(&[], Some(1), "End"), Some(Move::Select(2)));
+        assert_eq!(press(&[], Some(1), "x"), None);
+    }
+
+    #[test]
+    fn left_folds_then_goes_to_the_parent() {
+        assert_eq!(press(&[], Some(0), "ArrowLeft"), Some(Move::Fold(0)));
+        assert_eq!(press(&[0], Some(0), "ArrowLeft"), Some(Move::Stay));
+        assert_eq!(press(&[0], Some(0), "ArrowRight"), Some(Move::Unfold(0)));
+        assert_eq!(press(&[], Some(2), "ArrowLeft"), Some(Move::Select(0)));
+        assert_eq!(press(&[], Some(0), "ArrowRight"), Some(Move::Select(1)));
+    }
+}

@@ -2,7 +2,7 @@
 
 use model::{Number, Sense};
 
-use crate::kernel::{Objective, Sum, sum};
+use crate::kernel::{Objective, Sides, Sum, sum};
 use crate::mend::mended;
 use crate::multipliers::{Multipliers, on_grid, snapped};
 use crate::rows::{Bounds, ExactRows};
@@ -20,7 +20,7 @@ use crate::rows::{Bounds, ExactRows};
 /// `O(non-zeros)` whole-number operations, and as many again for each mend (see the crate).
 #[must_use]
 pub fn bound(rows: &ExactRows, bounds: &[Bounds], multipliers: &[f64]) -> Option<Number> {
-    let value = best(rows, Objective::Costs, bounds, multipliers)?;
+    let value = values(rows, Objective::Costs, bounds, multipliers).max()?;
     Some(match rows.sense {
         Sense::Minimise => value + &rows.offset,
         Sense::Maximise => &rows.offset - value,
@@ -35,11 +35,12 @@ pub fn infeasible(rows: &ExactRows, bounds: &[Bounds], multipliers: &[f64]) -> b
     if crossed(bounds) {
         return true;
     }
-    let proves = |ray: &[f64]| {
-        best(rows, Objective::Nothing, bounds, ray).is_some_and(|value| value > Number::ZERO)
-    };
     let turned: Vec<f64> = multipliers.iter().map(|y| -y).collect();
-    proves(multipliers) || proves(&turned)
+    let rays = [multipliers, &turned];
+    rays.into_iter().any(|ray| {
+        let mut values = values(rows, Objective::Nothing, bounds, ray);
+        values.any(|value| value > Number::ZERO)
+    })
 }
 
 /// Whether a column has its lower bound over its upper.
@@ -50,14 +51,16 @@ fn crossed(bounds: &[Bounds]) -> bool {
     })
 }
 
-/// The best of the sums for the two roundings.
-fn best(rows: &ExactRows, objective: Objective, bounds: &[Bounds], y: &[f64]) -> Option<Number> {
-    if bounds.len() != rows.column_count() || y.len() > rows.row_count() {
-        return None;
-    }
-    let roundings = [snapped(rows, objective, y), on_grid(rows, objective, y)];
-    let values = roundings.into_iter().flatten();
-    values.filter_map(|rounding| closed(rows, objective, bounds, rounding)).max()
+/// The sums for the two roundings, where they are finite.
+fn values<'a>(
+    rows: &'a ExactRows,
+    objective: Objective,
+    bounds: &'a [Bounds],
+    y: &'a [f64],
+) -> impl Iterator<Item = Number> + 'a {
+    let fits = bounds.len() == rows.column_count() && y.len() <= rows.row_count();
+    let roundings = [snapped, on_grid].into_iter().filter(move |_| fits);
+    roundings.filter_map(move |round| closed(rows, objective, bounds, round(rows, objective, y)?))
 }
 
 /// The sum, with the columns that make it −∞ dealt with: by other multipliers, and by
@@ -68,34 +71,28 @@ fn closed(
     bounds: &[Bounds],
     rounding: Multipliers,
 ) -> Option<Number> {
-    let open = match sum(rows, objective, bounds, &rounding) {
+    let sides = Sides { given: bounds, implied: None };
+    let open = match sum(rows, objective, sides, &rounding) {
         Sum::Bound(value) => return Some(value),
         Sum::Open(open) => open,
     };
-    let implied = within_implied(rows, bounds).and_then(|tighter| {
-        match sum(rows, objective, &tighter, &rounding) {
+    let implied = within_model(rows, bounds).then(|| {
+        let sides = Sides { given: bounds, implied: Some(&rows.implied) };
+        match sum(rows, objective, sides, &rounding) {
             Sum::Bound(value) => Some(value),
             Sum::Open(_) => None,
         }
     });
     let mended = mended(rows, objective, bounds, (rounding, open));
-    implied.max(mended)
+    implied.flatten().max(mended)
 }
 
-/// `bounds` with its infinite sides filled from what follows from the model's rows and
-/// bounds; `None` where `bounds` allows what the model's bounds do not.
-fn within_implied(rows: &ExactRows, bounds: &[Bounds]) -> Option<Vec<Bounds>> {
-    let mut out = Vec::with_capacity(bounds.len());
-    for ((own, given), implied) in rows.bounds.iter().zip(bounds).zip(&rows.implied) {
+/// Whether `bounds` allows nothing that the model's own bounds do not, so that what follows
+/// from the model's rows and bounds holds.
+fn within_model(rows: &ExactRows, bounds: &[Bounds]) -> bool {
+    rows.bounds.iter().zip(bounds).all(|(own, given)| {
         let lower = own.0.as_ref().is_none_or(|l| given.0.as_ref().is_some_and(|g| g >= l));
         let upper = own.1.as_ref().is_none_or(|u| given.1.as_ref().is_some_and(|g| g <= u));
-        if !lower || !upper {
-            return None;
-        }
-        let pick = |given: &Option<Number>, implied: &Option<Number>| {
-            given.clone().or_else(|| implied.clone())
-        };
-        out.push((pick(&given.0, &implied.0), pick(&given.1, &implied.1)));
-    }
-    Some(out)
+        lower && upper
+    })
 }

@@ -24,6 +24,25 @@ pub(crate) enum Objective {
     Nothing,
 }
 
+/// The bounds of the columns: those given, and, where they are infinite, those implied.
+#[derive(Debug, Clone, Copy)]
+pub(crate) struct Sides<'a> {
+    pub(crate) given: &'a [Bounds],
+    pub(crate) implied: Option<&'a [Bounds]>,
+}
+
+impl<'a> Sides<'a> {
+    /// The bound that goes with a reduced cost of this sign.
+    fn side(&self, column: usize, sign: Ordering) -> Option<&'a Number> {
+        let pick = |bounds: &'a Bounds| match sign {
+            Ordering::Greater => bounds.0.as_ref(),
+            _ => bounds.1.as_ref(),
+        };
+        let implied = || self.implied.and_then(|implied| pick(&implied[column]));
+        pick(&self.given[column]).or_else(implied)
+    }
+}
+
 /// A column whose reduced cost meets an infinite bound.
 #[derive(Debug, Clone)]
 pub(crate) struct Open {
@@ -46,7 +65,7 @@ pub(crate) enum Sum {
 pub(crate) fn sum(
     rows: &ExactRows,
     objective: Objective,
-    bounds: &[Bounds],
+    bounds: Sides<'_>,
     multipliers: &Multipliers,
 ) -> Sum {
     let job = Job { rows, objective, bounds, multipliers };
@@ -57,7 +76,7 @@ pub(crate) fn sum(
 struct Job<'a> {
     rows: &'a ExactRows,
     objective: Objective,
-    bounds: &'a [Bounds],
+    bounds: Sides<'a>,
     multipliers: &'a Multipliers,
 }
 
@@ -113,13 +132,11 @@ impl Job<'_> {
         let mut broken = Number::ZERO;
         let mut open = Vec::new();
         for (column, value) in reduced.iter().enumerate() {
-            let (lower, upper) = &self.bounds[column];
-            let bound = match value.sign() {
-                Ordering::Equal => continue,
-                Ordering::Greater => lower,
-                Ordering::Less => upper,
-            };
-            match bound {
+            let sign = value.sign();
+            if sign == Ordering::Equal {
+                continue;
+            }
+            match self.bounds.side(column, sign) {
                 None => open.push(Open { column, reduced: value.big() }),
                 Some(bound) if bound.is_int() => {
                     total.add_product(value, &W::read(bound.numerator())?)?;

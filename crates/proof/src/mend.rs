@@ -2,14 +2,15 @@
 //! wrong sign. The multiplier of one row that holds the column is moved just as far as the
 //! reduced cost needs, the sum is taken anew, and so on for a few rounds.
 
+use std::cmp::Ordering;
 use std::collections::BTreeMap;
 
-use dashu_int::{IBig, UBig, ops::Abs};
+use dashu_int::{IBig, ops::Abs};
 use model::Number;
 
-use crate::kernel::{Objective, Open, Sum, sum};
-use crate::multipliers::Multipliers;
-use crate::rows::{Bounds, ExactRows};
+use crate::kernel::{Objective, Open, Sides, Sum, sum};
+use crate::multipliers::{Multipliers, has_side};
+use crate::rows::{Bounds, ExactRows, common_denominator};
 
 /// Rounds of mending.
 const ROUNDS: usize = 4;
@@ -23,10 +24,9 @@ pub(crate) fn mended(
     (mut multipliers, mut open): (Multipliers, Vec<Open>),
 ) -> Option<Number> {
     for _ in 0..ROUNDS {
-        if !correct(rows, bounds, &mut multipliers, &open) {
-            return None;
-        }
-        match sum(rows, objective, bounds, &multipliers) {
+        let changes = Choice::new(rows, bounds, &multipliers, &open).changes()?;
+        apply(&mut multipliers, &changes);
+        match sum(rows, objective, Sides { given: bounds, implied: None }, &multipliers) {
             Sum::Bound(value) => return Some(value),
             Sum::Open(next) => open = next,
         }
@@ -34,79 +34,111 @@ pub(crate) fn mended(
     None
 }
 
-/// A way to close one column: a new multiplier for one row.
-struct Correction {
-    row: usize,
-    value: IBig,
-    /// How many other columns it may open, and how far it moves the multiplier.
-    cost: (usize, UBig),
+/// Adds the changes, over a larger common denominator where they need one.
+fn apply(multipliers: &mut Multipliers, changes: &BTreeMap<usize, Number>) {
+    let factor = common_denominator(changes.values());
+    if !factor.is_one() {
+        let times = IBig::from(factor.clone());
+        multipliers.values.iter_mut().for_each(|value| *value *= &times);
+        multipliers.denominator *= &factor;
+    }
+    for (&row, change) in changes {
+        let whole = change.numerator() * IBig::from(&factor / change.denominator());
+        multipliers.values[row] += whole;
+    }
 }
 
-/// Chooses and applies a correction for each open column; false when one has none.
-fn correct(rows: &ExactRows, bounds: &[Bounds], y: &mut Multipliers, open: &[Open]) -> bool {
-    let mut chosen: BTreeMap<usize, Correction> = BTreeMap::new();
-    let place: BTreeMap<usize, &Open> = open.iter().map(|o| (o.column, o)).collect();
-    for row in 0..rows.row_count() {
-        let (columns, coefficients) = rows.entries(row);
+/// A way to close one column: a change of the multiplier of one row.
+struct Correction {
+    row: usize,
+    change: Number,
+    /// How many columns it may open, and how far it moves the multiplier.
+    cost: (usize, Number),
+}
+
+/// The search for the best correction of each open column.
+struct Choice<'a> {
+    rows: &'a ExactRows,
+    bounds: &'a [Bounds],
+    multipliers: &'a Multipliers,
+    open: BTreeMap<usize, &'a Open>,
+    chosen: BTreeMap<usize, Correction>,
+}
+
+impl<'a> Choice<'a> {
+    fn new(
+        rows: &'a ExactRows,
+        bounds: &'a [Bounds],
+        multipliers: &'a Multipliers,
+        open: &'a [Open],
+    ) -> Self {
+        let open = open.iter().map(|open| (open.column, open)).collect();
+        Self { rows, bounds, multipliers, open, chosen: BTreeMap::new() }
+    }
+
+    /// The changes by row; `None` when a column has no correction. Of two changes of
+    /// one row the larger is taken.
+    fn changes(mut self) -> Option<BTreeMap<usize, Number>> {
+        for row in 0..self.rows.row_count() {
+            self.look_at(row);
+        }
+        if self.open.is_empty() || self.chosen.len() < self.open.len() {
+            return None;
+        }
+        let mut changes: BTreeMap<usize, Number> = BTreeMap::new();
+        for correction in self.chosen.into_values() {
+            let change = changes.entry(correction.row).or_insert(Number::ZERO);
+            if correction.change.clone().abs() > change.clone().abs() {
+                *change = correction.change;
+            }
+        }
+        Some(changes)
+    }
+
+    /// Compares the corrections that a row offers with those found before.
+    fn look_at(&mut self, row: usize) {
+        let (columns, coefficients) = self.rows.entries(row);
+        let mut opened: Option<(usize, usize)> = None;
         for (k, &column) in columns.iter().enumerate() {
-            let Some(open) = place.get(&(column as usize)) else { continue };
-            let a = coefficients.at(k);
-            let free = is_free(&bounds[open.column]);
-            let Some(change) = needed(&open.reduced, &a, free) else { continue };
-            let Some(new) = correction(rows, bounds, &y.values[row], (row, change)) else {
+            let Some(open) = self.open.get(&(column as usize)) else { continue };
+            let change = needed(open, &coefficients.at(k), &self.bounds[open.column]);
+            let value = Number::from(self.multipliers.values[row].clone()) + &change;
+            if !has_side(self.rows, row, value.cmp(&Number::ZERO)) {
                 continue;
-            };
-            let old = chosen.get(&open.column);
-            if old.is_none_or(|old| new.cost < old.cost) {
-                chosen.insert(open.column, new);
+            }
+            let (up, down) = *opened.get_or_insert_with(|| self.opened(row));
+            let opened = if change > Number::ZERO { up } else { down };
+            let cost = (opened, change.clone().abs());
+            if self.chosen.get(&open.column).is_none_or(|old| cost < old.cost) {
+                self.chosen.insert(open.column, Correction { row, change, cost });
             }
         }
     }
-    let all = chosen.len() == open.len();
-    for correction in chosen.into_values() {
-        y.values[correction.row] = correction.value;
+
+    /// How many columns a higher and a lower multiplier of a row may open.
+    fn opened(&self, row: usize) -> (usize, usize) {
+        let (columns, coefficients) = self.rows.entries(row);
+        let (mut up, mut down) = (0, 0);
+        for (k, &column) in columns.iter().enumerate() {
+            let (lower, upper) = &self.bounds[column as usize];
+            let (low, high) = (usize::from(lower.is_none()), usize::from(upper.is_none()));
+            let positive = coefficients.at(k) > IBig::ZERO;
+            up += if positive { high } else { low };
+            down += if positive { low } else { high };
+        }
+        (up, down)
     }
-    all
 }
 
-fn is_free(bounds: &Bounds) -> bool {
-    bounds.0.is_none() && bounds.1.is_none()
-}
-
-/// The least change of a multiplier with coefficient `a` that takes `reduced` to 0 or just
-/// over to the other sign; for a free column exactly to 0, or `None`.
-fn needed(reduced: &IBig, a: &IBig, free: bool) -> Option<IBig> {
-    let (size, divisor) = (reduced.clone().abs(), a.clone().abs());
-    let whole = &size / &divisor;
-    let exact = &whole * &divisor == size;
-    if free && !exact {
-        return None;
+/// The least change of a multiplier with coefficient `a` that takes the reduced cost to 0,
+/// or, where the column is not free, to the next whole number of steps over it.
+fn needed(open: &Open, a: &IBig, bounds: &Bounds) -> Number {
+    let change = Number::from(open.reduced.clone()) / Number::from(a.clone());
+    if bounds.0.is_none() && bounds.1.is_none() {
+        return change;
     }
-    let steps = if exact { whole } else { whole + IBig::ONE };
-    let same_sign = (*reduced > IBig::ZERO) == (*a > IBig::ZERO);
-    Some(if same_sign { steps } else { -steps })
-}
-
-/// The correction that adds `change` to the multiplier of a row, if the row has a side for it.
-fn correction(
-    rows: &ExactRows,
-    bounds: &[Bounds],
-    old: &IBig,
-    (row, change): (usize, IBig),
-) -> Option<Correction> {
-    let value = old + &change;
-    let sides = &rows.rows[row];
-    let side = if value > IBig::ZERO { &sides.lower } else { &sides.upper };
-    if side.is_none() && !value.is_zero() {
-        return None;
+    match change.cmp(&Number::ZERO) {
+        Ordering::Less => Number::from(change.floor()),
+        _ => Number::from(change.ceil()),
     }
-    let (columns, coefficients) = rows.entries(row);
-    let mut opened = 0;
-    for (k, &column) in columns.iter().enumerate() {
-        let falls = (coefficients.at(k) > IBig::ZERO) == (change > IBig::ZERO);
-        let (lower, upper) = &bounds[column as usize];
-        opened += usize::from(if falls { upper.is_none() } else { lower.is_none() });
-    }
-    let moved = dashu_int::ops::UnsignedAbs::unsigned_abs(change);
-    Some(Correction { row, value, cost: (opened, moved) })
 }

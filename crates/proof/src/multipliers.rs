@@ -9,7 +9,9 @@
 //!
 //! Both also clip: a multiplier whose sign has no side in its row becomes 0.
 
-use dashu_int::{IBig, UBig};
+use std::cmp::Ordering;
+
+use dashu_int::{IBig, UBig, ops::BitTest};
 use model::{Number, nearest_f64};
 
 use crate::kernel::Objective;
@@ -57,7 +59,8 @@ pub(crate) fn on_grid(rows: &ExactRows, objective: Objective, y: &[f64]) -> Opti
     let mut values = Vec::with_capacity(scaled.len());
     for (index, value) in scaled.iter().enumerate() {
         let whole = IBig::try_from((value * step).round()).ok()?;
-        values.push(clipped(rows, index, whole));
+        let allowed = has_side(rows, index, whole.cmp(&IBig::ZERO));
+        values.push(if allowed { whole } else { IBig::ZERO });
     }
     let shift = usize::try_from(bits).unwrap_or_default();
     Some(Multipliers { values, denominator: UBig::ONE << shift })
@@ -66,27 +69,81 @@ pub(crate) fn on_grid(rows: &ExactRows, objective: Objective, y: &[f64]) -> Opti
 /// The multipliers as simple fractions; `None` where one is not near any, or their common
 /// denominator is too large.
 pub(crate) fn snapped(rows: &ExactRows, objective: Objective, y: &[f64]) -> Option<Multipliers> {
-    let scale = Number::from(objective_scale(rows, objective));
-    let mut denominator = UBig::ONE;
-    let mut fractions: Vec<Number> = Vec::with_capacity(rows.row_count());
-    for (index, row) in rows.rows.iter().enumerate() {
+    let mut fractions = Vec::with_capacity(rows.row_count());
+    for index in 0..rows.row_count() {
         let (top, bottom) = simple_fraction(given(y, index)?)?;
+        let clipped = if has_side(rows, index, top.cmp(&0)) { top } else { 0 };
+        fractions.push((clipped, bottom));
+    }
+    let scale = objective_scale(rows, objective);
+    let small = || small_fractions(rows, i128::try_from(&scale).ok()?, &fractions);
+    small().or_else(|| large_fractions(rows, &Number::from(scale.clone()), &fractions))
+}
+
+/// The fractions times `scale`, for the scaled rows, over one denominator: in 128 bits, or
+/// `None` where they do not suffice.
+fn small_fractions(rows: &ExactRows, scale: i128, fractions: &[(i64, i64)]) -> Option<Multipliers> {
+    let mut scaled: Vec<(i128, i128)> = Vec::with_capacity(fractions.len());
+    let mut common = 1_i128;
+    for (row, &(top, bottom)) in rows.rows.iter().zip(fractions) {
         if top == 0 {
-            fractions.push(Number::ZERO);
+            scaled.push((0, 1));
             continue;
         }
+        let top = i128::from(top).checked_mul(scale)?;
+        let bottom = i128::from(bottom).checked_mul(i128::try_from(&row.scale).ok()?)?;
+        if bottom == 1 {
+            scaled.push((top, 1));
+            continue;
+        }
+        let divisor = common_divisor(top.checked_abs()?, bottom);
+        let (top, bottom) = (top / divisor, bottom / divisor);
+        if common % bottom != 0 {
+            common = (common / common_divisor(common, bottom)).checked_mul(bottom)?;
+        }
+        scaled.push((top, bottom));
+    }
+    let value = |(top, bottom): (i128, i128)| Some(IBig::from(top.checked_mul(common / bottom)?));
+    let values: Option<Vec<IBig>> = scaled.into_iter().map(value).collect();
+    Some(Multipliers { values: values?, denominator: UBig::try_from(common).ok()? })
+}
+
+/// The greatest common divisor of two numbers that are not negative; in 64 bits, which are
+/// far quicker to divide, once the numbers fit.
+fn common_divisor(mut a: i128, mut b: i128) -> i128 {
+    while b > i128::from(u64::MAX) || a > i128::from(u64::MAX) {
+        if b == 0 {
+            return a;
+        }
+        (a, b) = (b, a % b);
+    }
+    let (mut a, mut b) = (a as u64, b as u64);
+    while b != 0 {
+        (a, b) = (b, a % b);
+    }
+    i128::from(a)
+}
+
+/// The same without a limit to the numbers, but for the size of the denominator.
+fn large_fractions(
+    rows: &ExactRows,
+    scale: &Number,
+    fractions: &[(i64, i64)],
+) -> Option<Multipliers> {
+    let mut denominator = UBig::ONE;
+    let mut scaled: Vec<Number> = Vec::with_capacity(fractions.len());
+    for (row, &(top, bottom)) in rows.rows.iter().zip(fractions) {
         let plain = Number::from_parts(IBig::from(top), UBig::try_from(bottom).ok()?);
-        let fraction = plain * &scale / Number::from(row.scale.clone());
+        let fraction = plain * scale / Number::from(row.scale.clone());
         denominator = common_multiple(denominator, fraction.denominator());
-        if dashu_int::ops::BitTest::bit_len(&denominator) > MOST_BITS {
+        if denominator.bit_len() > MOST_BITS {
             return None;
         }
-        fractions.push(fraction);
+        scaled.push(fraction);
     }
-    let values = fractions.iter().enumerate().map(|(index, fraction)| {
-        let factor = IBig::from(&denominator / fraction.denominator());
-        clipped(rows, index, fraction.numerator() * factor)
-    });
+    let values = scaled
+        .iter()
+        .map(|fraction| fraction.numerator() * IBig::from(&denominator / fraction.denominator()));
     Some(Multipliers { values: values.collect(), denominator })
 }
 
@@ -103,17 +160,23 @@ fn objective_scale(rows: &ExactRows, objective: Objective) -> UBig {
     }
 }
 
-/// 0 where the row has no side for the sign of the multiplier.
-fn clipped(rows: &ExactRows, index: usize, value: IBig) -> IBig {
+/// Whether a row has a side for a multiplier of this sign.
+pub(crate) fn has_side(rows: &ExactRows, index: usize, sign: Ordering) -> bool {
     let row = &rows.rows[index];
-    let side = if value > IBig::ZERO { &row.lower } else { &row.upper };
-    if side.is_some() { value } else { IBig::ZERO }
+    match sign {
+        Ordering::Equal => true,
+        Ordering::Greater => row.lower.is_some(),
+        Ordering::Less => row.upper.is_some(),
+    }
 }
 
 /// The first convergent p/q of the continued fraction of `value` that is within the
 /// tolerance; `None` when q grows over the limit first.
 pub(crate) fn simple_fraction(value: f64) -> Option<(i64, i64)> {
     let size = value.abs();
+    if size == 0.0 {
+        return Some((0, 1));
+    }
     if size > 1e15 {
         return None;
     }

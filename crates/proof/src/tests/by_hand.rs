@@ -111,6 +111,35 @@ fn free_columns_are_mended() {
     assert!(off <= exact && off > &exact - ratio(1, 1_000_000), "{off}");
 }
 
+/// A multiplier without a side for its sign counts as 0: (−5, 1/5) is worth 2/5.
+#[test]
+fn wrong_signs_are_clipped() {
+    let model = two_rows(Sense::Minimise);
+    let rows = ExactRows::new(&model);
+    assert_eq!(bound(&rows, &bounds(&model), &[-5.0, 0.2]), Some(ratio(52, 5)));
+}
+
+/// A free column with coefficients 3 and 7 in multiples of the grid step that neither divides:
+/// min 4x + 2y with 3x + y ≥ −10, 7x ≥ −28, y ≥ 0. The optimum is −40/3 at (−10/3, 0), with
+/// multipliers (4/3, 0); multipliers near them are mended.
+#[test]
+fn coefficients_that_do_not_divide() {
+    let mut b = ModelBuilder::new("sevens", Sense::Minimise);
+    b.column(&[], &column(None, None, Number::from(4), false)).unwrap();
+    b.column(&[], &column(Some(0), None, Number::from(2), false)).unwrap();
+    let n = Number::from;
+    b.row(&[], row(&[(0, n(3)), (1, n(1))], Some(n(-10)), None)).unwrap();
+    b.row(&[], row(&[(0, n(7))], Some(n(-28)), None)).unwrap();
+    let model = b.build();
+    let rows = ExactRows::new(&model);
+    let optimum = ratio(-40, 3);
+    assert_eq!(bound(&rows, &bounds(&model), &[4.0 / 3.0, 0.0]), Some(optimum.clone()));
+    for off in [1e-8, 3e-8, 7e-8] {
+        let near = bound(&rows, &bounds(&model), &[4.0 / 3.0 - off, off]).unwrap();
+        assert!(near <= optimum && near > &optimum - ratio(1, 100_000), "{near}");
+    }
+}
+
 /// x + y ≥ 3 and x + y ≤ `most`, with 0 ≤ x, y and, if given, a common upper bound.
 fn pressed(most: i64, upper: Option<i64>) -> Model {
     let mut b = ModelBuilder::new("pressed", Sense::Minimise);

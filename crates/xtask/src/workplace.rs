@@ -45,8 +45,28 @@ impl Workplace {
     }
 
     /// The folder of published instances as an absolute path, since tests run in the folders of
-    /// their crates. `None` if the variable is not set.
+    /// their crates. `None` if the variable is not set or names no folder.
     pub(crate) fn data(&self) -> Option<PathBuf> {
-        env::var_os(DATA).filter(|value| !value.is_empty()).map(|value| self.root.join(value))
+        let named = env::var_os(DATA).filter(|value| !value.is_empty())?;
+        self.folder(Path::new(&named))
+    }
+
+    /// A folder named from the root of the repository, if there is one.
+    fn folder(&self, named: &Path) -> Option<PathBuf> {
+        self.root.join(named).canonicalize().ok().filter(|folder| folder.is_dir())
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn folders_are_named_from_the_root_and_given_in_full() {
+        let place = Workplace::find().expect("the repository");
+        assert_eq!(place.folder(Path::new("web/../web")), Some(place.web()));
+        assert_eq!(place.folder(&place.web()), Some(place.web()));
+        assert_eq!(place.folder(Path::new("no-such-folder")), None);
+        assert_eq!(place.folder(Path::new("Cargo.toml")), None);
     }
 }

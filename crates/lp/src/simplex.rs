@@ -10,9 +10,14 @@ use crate::dual::{self, DualState, DualStep};
 use crate::outcome::{Outcome, Ray, StopReason};
 use crate::primal::{self, PrimalState, PrimalStep};
 use crate::problem::{Col, NewRow, Problem, ProblemError, RowId, clean_row, index_below_limit};
-use crate::state::Core;
-use crate::tolerances::{DUAL, MARKOWITZ, MARKOWITZ_CAREFUL, PRIMAL_RELATIVE};
+use crate::state::{Core, Room};
+use crate::tolerances::{
+    DUAL, LAST_ATTEMPT, MARKOWITZ, MARKOWITZ_CAREFUL, PRIMAL, PRIMAL_RELATIVE,
+};
 use std::ops::Range;
+
+/// The last attempt.
+const LAST: u32 = 3;
 
 /// Evaluations before a solve is begun again with more care.
 const ROUNDS: u32 = 20;
@@ -264,12 +269,14 @@ impl Simplex {
         }
     }
 
-    /// Wrong-signed reduced costs up to this count as right.
-    fn dual_tolerance(&self) -> f64 {
+    /// Sets how much violation counts as none.
+    fn set_room(&mut self) {
         let largest = self.core.cost.iter().fold(0.0, |largest: f64, cost| {
             if cost.abs() > largest { cost.abs() } else { largest }
         });
-        DUAL + PRIMAL_RELATIVE * largest
+        let factor = if self.attempt < LAST { 1.0 } else { LAST_ATTEMPT };
+        self.core.room =
+            Room { primal: factor * PRIMAL, dual: factor * DUAL + PRIMAL_RELATIVE * largest };
     }
 
     /// Sets the care for an attempt.
@@ -281,13 +288,14 @@ impl Simplex {
             self.core.threshold = threshold;
             self.core.canonical = false;
         }
+        self.set_room();
         self.phase = Phase::Evaluate;
     }
 
-    /// Begins again with more care: first from the current basis, then from the slack basis; then gives up.
+    /// Begins again with more care: from the current basis, from the slack basis, with looser tolerances; then gives up.
     fn fall_back(&mut self, reason: String) {
         self.attempt += 1;
-        if self.attempt > 2 {
+        if self.attempt > LAST {
             self.stop(StopReason::Numerical(reason));
             return;
         }
@@ -311,7 +319,7 @@ impl Simplex {
         self.core.refactor_canonical();
         self.core.compute_basic();
         self.core.compute_reduced();
-        let tolerance = self.dual_tolerance();
+        let tolerance = self.core.room.dual;
         if !self.core.is_primal_feasible() && self.core.flip_to_right_side(tolerance) {
             self.core.compute_basic();
         }
@@ -434,8 +442,7 @@ impl Simplex {
         if self.stops() {
             return;
         }
-        let tolerance = self.dual_tolerance();
-        match primal::step(&mut self.core, &mut self.primal, tolerance) {
+        match primal::step(&mut self.core, &mut self.primal) {
             PrimalStep::Moved => {}
             PrimalStep::Optimal => self.phase = Phase::Evaluate,
             PrimalStep::Ray { entering, direction } => self.end_on_ray(entering, direction),

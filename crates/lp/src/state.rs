@@ -8,7 +8,7 @@ use crate::basis::Status;
 use crate::lu::{BasisColumns, Factor};
 use crate::problem::Problem;
 use crate::sparse::{Matrix, SparseVector};
-use crate::tolerances::{self, MARKOWITZ};
+use crate::tolerances::{self, MARKOWITZ, PRIMAL_RELATIVE};
 
 /// Vectors kept between iterations so that nothing is allocated in them.
 #[derive(Clone, Debug, Default)]
@@ -23,6 +23,21 @@ pub(crate) struct Scratch {
     pub(crate) tau: SparseVector,
     /// B⁻¹ times the columns of flipped variables, by position.
     pub(crate) flips: SparseVector,
+}
+
+/// How much violation counts as none in the current attempt.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct Room {
+    /// Violation of bounds.
+    pub(crate) primal: f64,
+    /// Wrong sign of reduced costs.
+    pub(crate) dual: f64,
+}
+
+impl Default for Room {
+    fn default() -> Self {
+        Self { primal: tolerances::PRIMAL, dual: tolerances::DUAL }
+    }
 }
 
 /// Problem, basis, factors and current values.
@@ -52,6 +67,7 @@ pub(crate) struct Core {
     /// True while the factors belong to the sorted head and carry no update.
     pub(crate) canonical: bool,
     pub(crate) threshold: f64,
+    pub(crate) room: Room,
     pub(crate) scratch: Scratch,
     pub(crate) ticks: u64,
     pub(crate) iterations: u64,
@@ -86,6 +102,7 @@ impl Core {
             factor: Factor::default(),
             canonical: false,
             threshold: MARKOWITZ,
+            room: Room::default(),
             scratch: Scratch::default(),
             ticks: 0,
             iterations: 0,
@@ -245,7 +262,8 @@ impl Core {
     /// Sets the stored violation of a position from its value.
     pub(crate) fn note_violation(&mut self, position: usize) {
         let j = self.head[position] as usize;
-        let excess = excess(self.basic[position], self.work_lower[j], self.work_upper[j]);
+        let excess =
+            excess(self.basic[position], self.work_lower[j], self.work_upper[j], self.room.primal);
         self.violation[position] = excess * excess;
     }
 
@@ -338,17 +356,18 @@ impl Core {
         self.scratch.column = column;
     }
 
-    /// True when the pivot of `scratch.column` is large enough and agrees with the one of `scratch.row`.
+    /// True when the pivot of `scratch.column` is large enough beside the column and agrees with the one of `scratch.row`.
     pub(crate) fn pivot_is_sound(&self, position: u32, entering: u32) -> bool {
         let by_column = self.scratch.column.get(position);
         let by_row = self.scratch.row.get(entering);
-        let least = if self.factor.updates() > 0 {
-            tolerances::PIVOT_AFTER_UPDATES
+        let (least, agreement) = if self.factor.updates() > 0 {
+            (tolerances::PIVOT_AFTER_UPDATES, tolerances::AGREEMENT_AFTER_UPDATES)
         } else {
-            tolerances::PIVOT_FRESH
+            (tolerances::PIVOT_FRESH, tolerances::AGREEMENT_FRESH)
         };
-        by_column.abs() >= least
-            && (by_column - by_row).abs() <= tolerances::PIVOT_AGREEMENT * (1.0 + by_column.abs())
+        let largest = self.scratch.column.largest();
+        let least = if largest < 1.0 { least * largest } else { least };
+        by_column.abs() >= least && (by_column - by_row).abs() <= agreement * by_column.abs()
     }
 
     /// Puts `entering` at a position with a value; the variable that leaves goes to `leaving_status`.
@@ -414,11 +433,11 @@ pub(crate) fn settled(status: Status, lower: f64, upper: f64) -> Status {
     }
 }
 
-/// How far a value is below (negative) or above (positive) its bounds; zero within tolerance.
-pub(crate) fn excess(value: f64, lower: f64, upper: f64) -> f64 {
-    if value < lower - tolerances::primal(lower) {
+/// How far a value is below (negative) or above (positive) its bounds; zero within `room`.
+pub(crate) fn excess(value: f64, lower: f64, upper: f64, room: f64) -> f64 {
+    if value < lower - room - PRIMAL_RELATIVE * lower.abs() {
         value - lower
-    } else if value > upper + tolerances::primal(upper) {
+    } else if value > upper + room + PRIMAL_RELATIVE * upper.abs() {
         value - upper
     } else {
         0.0

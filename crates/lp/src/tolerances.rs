@@ -15,20 +15,36 @@ pub(crate) const HARRIS_DUAL: f64 = 1e-9;
 /// How far basic values may overstep a bound in the first pass of the primal ratio test; absolute.
 pub(crate) const HARRIS_PRIMAL: f64 = 1e-9;
 
-/// Entries of a tableau row or column below this take no part in a ratio test; absolute.
-pub(crate) const RATIO_ENTRY: f64 = 1e-9;
+/// Entries of a tableau row or column below this take no part in a ratio test; relative to the largest of them,
+/// and to 1 where that is larger.
+const RATIO_ENTRY: f64 = 1e-9;
 
-/// Smallest pivot taken while the factors carry updates; below it they are made afresh first; absolute.
+/// The smallest entry of a ratio test when this is the largest.
+pub(crate) fn ratio_entry(largest: f64) -> f64 {
+    if largest < 1.0 { RATIO_ENTRY * largest } else { RATIO_ENTRY }
+}
+
+/// Smallest pivot taken while the factors carry updates, below it they are made afresh first; relative to the
+/// largest entry of its column, and to 1 where that is larger.
 pub(crate) const PIVOT_AFTER_UPDATES: f64 = 1e-5;
 
-/// Smallest pivot taken with fresh factors; absolute.
+/// Smallest pivot taken with fresh factors; relative as above.
 pub(crate) const PIVOT_FRESH: f64 = 1e-8;
 
-/// Difference allowed between a pivot computed by row and by column; relative to 1 + |pivot|.
-pub(crate) const PIVOT_AGREEMENT: f64 = 1e-7;
+/// Difference allowed between a pivot computed by row and by column while the factors carry updates; relative.
+pub(crate) const AGREEMENT_AFTER_UPDATES: f64 = 1e-6;
 
-/// Values produced by a triangular solve below this are taken for cancelled; absolute.
-pub(crate) const SOLVE_DROP: f64 = 1e-14;
+/// The same with fresh factors; relative.
+pub(crate) const AGREEMENT_FRESH: f64 = 1e-3;
+
+/// Values produced by a solve below this are taken for cancelled; relative to the largest of them, and to 1 where that
+/// is larger.
+const SOLVE_DROP: f64 = 1e-14;
+
+/// The value below which the results of a solve are dropped when this is the largest.
+pub(crate) fn solve_drop(largest: f64) -> f64 {
+    if largest < 1.0 { SOLVE_DROP * largest } else { SOLVE_DROP }
+}
 
 /// Entries of the active submatrix below this are taken for cancelled; absolute.
 pub(crate) const FACTOR_DROP: f64 = 1e-14;
@@ -81,7 +97,5 @@ pub(crate) const VERIFY_RAY: f64 = 1e-9;
 /// A Farkas proof must exceed zero by this; relative to the sum of the terms' sizes.
 pub(crate) const VERIFY_FARKAS: f64 = 1e-9;
 
-/// The tolerance for a violation of a bound of this size.
-pub(crate) fn primal(bound: f64) -> f64 {
-    PRIMAL + PRIMAL_RELATIVE * bound.abs()
-}
+/// Factor on [`PRIMAL`] and [`DUAL`] in the last attempt on a problem whose values are too large for them.
+pub(crate) const LAST_ATTEMPT: f64 = 100.0;

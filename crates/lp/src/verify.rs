@@ -143,8 +143,8 @@ impl Core {
     /// Checks that a point is within its bounds and rows; gives the activities.
     fn check_point(&self, x: &[f64]) -> Result<Vec<f64>, String> {
         let n = self.columns();
-        if let Some(j) =
-            (0..n).find(|&j| !x[j].is_finite() || excess(x[j], self.lower[j], self.upper[j]) != 0.0)
+        if let Some(j) = (0..n)
+            .find(|&j| !x[j].is_finite() || excess(x[j], self.lower[j], self.upper[j], 0.0) != 0.0)
         {
             return Err(format!("column {j} is out of its bounds"));
         }
@@ -179,6 +179,30 @@ impl Core {
         Ok(Solution { objective, x, activity, duals, reduced_costs: self.reduced[..n].to_vec() })
     }
 
+    /// How the columns move while `entering` does, scaled so that the fastest moves by 1.
+    fn direction(&self, entering: u32, direction: f64) -> Vec<f64> {
+        let n = self.columns();
+        let mut ray = vec![0.0; n];
+        if (entering as usize) < n {
+            ray[entering as usize] = direction;
+        }
+        for (position, alpha) in self.scratch.column.iter() {
+            let j = self.head[position as usize] as usize;
+            if j < n && alpha != 0.0 {
+                ray[j] = -direction * alpha;
+            }
+        }
+        let largest =
+            ray.iter().fold(
+                0.0,
+                |largest: f64, value| if value.abs() > largest { value.abs() } else { largest },
+            );
+        if largest > 0.0 {
+            ray.iter_mut().for_each(|value| *value /= largest);
+        }
+        ray
+    }
+
     /// A feasible point and the direction in which `entering` moves, both checked.
     pub(crate) fn unbounded_ray(
         &self,
@@ -188,16 +212,7 @@ impl Core {
         let n = self.columns();
         let point = self.point();
         self.check_point(&point)?;
-        let mut ray = vec![0.0; n];
-        if (entering as usize) < n {
-            ray[entering as usize] = direction;
-        }
-        for (position, alpha) in self.scratch.column.iter() {
-            let j = self.head[position as usize] as usize;
-            if j < n && alpha.abs() > VERIFY_RAY {
-                ray[j] = -direction * alpha;
-            }
-        }
+        let ray = self.direction(entering, direction);
         let recedes = |value: f64, size: f64, j: usize| {
             let room = VERIFY_RAY * size;
             (value >= -room || self.lower[j].is_infinite())

@@ -10,7 +10,7 @@
 
 use crate::basis::Status;
 use crate::state::Core;
-use crate::tolerances::{HARRIS_DUAL, PRIMAL, RATIO_ENTRY};
+use crate::tolerances::{HARRIS_DUAL, PRIMAL, ratio_entry};
 use std::ops::Range;
 
 /// What the test says.
@@ -56,14 +56,15 @@ pub(crate) fn choose(core: &mut Core, position: u32, sign: f64) -> Choice {
 /// The variables whose reduced cost falls to zero along the step.
 fn breakpoints(core: &Core, sign: f64) -> Vec<Breakpoint> {
     let mut points = Vec::new();
+    let least = ratio_entry(core.scratch.row.largest());
     for (variable, value) in core.scratch.row.iter() {
         let j = variable as usize;
         let alpha = sign * value;
         let blocks = match core.status[j] {
             Status::Basic => false,
-            Status::Lower => alpha > RATIO_ENTRY && !core.is_fixed(j),
-            Status::Upper => alpha < -RATIO_ENTRY,
-            Status::Free => alpha.abs() > RATIO_ENTRY,
+            Status::Lower => alpha > least && !core.is_fixed(j),
+            Status::Upper => alpha < -least,
+            Status::Free => alpha.abs() > least,
         };
         if blocks {
             let range = core.work_upper[j] - core.work_lower[j];

@@ -17,7 +17,7 @@ mod triangle;
 pub(crate) use pivots::BasisColumns;
 
 use crate::sparse::SparseVector;
-use crate::tolerances::SOLVE_DROP;
+use crate::tolerances::solve_drop;
 use eta::EtaFile;
 use pivots::Pivots;
 use triangle::{Direction, Reach, Triangle};
@@ -86,7 +86,8 @@ impl Factor {
             Direction::Backward,
             &mut self.reach,
         );
-        self.work.drain_into(&self.position_of_step, SOLVE_DROP, vector);
+        let drop = solve_drop(self.work.largest());
+        self.work.drain_into(&self.position_of_step, drop, vector);
         ticks + self.etas.forward(vector)
     }
 
@@ -101,7 +102,8 @@ impl Factor {
             &mut self.reach,
         );
         ticks += self.lower_rows.solve(None, &mut self.work, Direction::Backward, &mut self.reach);
-        self.work.drain_into(&self.row_of_step, SOLVE_DROP, vector);
+        let drop = solve_drop(self.work.largest());
+        self.work.drain_into(&self.row_of_step, drop, vector);
         ticks
     }
 

@@ -149,46 +149,29 @@ fn dependent_columns_are_replaced_by_logicals() {
     assert!(residual(&mut factor, &mended, &mut Random(5)) < 1e-12);
 }
 
+/// Every place listed: the solve takes all steps. Few listed: it searches first. Both give the same bits.
 #[test]
 fn sparse_and_full_solves_give_the_same_bits() {
     let mut random = Random(77);
     let size = 400;
-    let mut columns = random_columns(&mut random, size, 1);
-    let (mut factor, replaced, _) = Factor::factorise(&gather(&columns), MARKOWITZ);
-    for r in replaced {
-        columns[r.position as usize] = vec![(r.row, -1.0)];
-    }
-    for row in 0..size as u32 {
+    let columns = random_columns(&mut random, size, 1);
+    let (factor, _, _) = Factor::factorise(&gather(&columns), MARKOWITZ);
+    let mut reach = Reach::new(size);
+    for step in 0..size as u32 {
         let mut sparse = SparseVector::default();
         sparse.reset(size);
-        sparse.set(row, 1.0);
+        sparse.set(step, 1.0);
         let mut full = SparseVector::default();
         full.reset(size);
-        for i in 0..size as u32 {
-            full.set(i, if i == row { 1.0 } else { 0.0 });
+        (0..size as u32).for_each(|k| full.set(k, if k == step { 1.0 } else { 0.0 }));
+        for x in [&mut sparse, &mut full] {
+            factor.lower_columns.solve(None, x, Direction::Forward, &mut reach);
+            factor.upper_columns.solve(Some(&factor.diagonal), x, Direction::Backward, &mut reach);
         }
-        factor.ftran(&mut sparse);
-        full.copy_from(&full.clone());
-        factor.reach = Reach::new(size);
-        let before = full.get(row).to_bits();
-        assert_eq!(before, 1.0f64.to_bits());
-        factor.lower_columns.solve(None, &mut factor.work, Direction::Forward, &mut factor.reach);
-        let mut dense = SparseVector::default();
-        dense.reset(size);
-        for i in 0..size as u32 {
-            dense.set(factor.step_of_row[i as usize], full.get(i));
-        }
-        factor.lower_columns.solve(None, &mut dense, Direction::Forward, &mut factor.reach);
-        factor.upper_columns.solve(
-            Some(&factor.diagonal),
-            &mut dense,
-            Direction::Backward,
-            &mut factor.reach,
+        assert!(
+            (0..size as u32).all(|k| sparse.get(k).to_bits() == full.get(k).to_bits()),
+            "step {step}"
         );
-        for i in 0..size as u32 {
-            let value = dense.get(factor.step_of_position[i as usize]);
-            let held = if value.abs() > SOLVE_DROP { value } else { 0.0 };
-            assert_eq!(held.to_bits(), sparse.get(i).to_bits());
-        }
+        assert!(sparse.count() <= full.count());
     }
 }

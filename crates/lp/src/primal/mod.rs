@@ -53,8 +53,9 @@ pub(crate) fn begin(core: &mut Core, state: &mut PrimalState) {
     state.perturbed = false;
 }
 
-/// One step; reduced costs of at most `tolerance` count as right.
-pub(crate) fn step(core: &mut Core, state: &mut PrimalState, tolerance: f64) -> PrimalStep {
+/// One step.
+pub(crate) fn step(core: &mut Core, state: &mut PrimalState) -> PrimalStep {
+    let tolerance = core.room.dual;
     if state.may_perturb && !state.perturbed && state.stall >= STALL {
         perturb::relax_bounds(core);
         state.perturbed = true;

@@ -7,7 +7,7 @@
 //! Source: Harris 1973.
 
 use crate::state::Core;
-use crate::tolerances::{HARRIS_PRIMAL, RATIO_ENTRY};
+use crate::tolerances::{HARRIS_PRIMAL, ratio_entry};
 
 /// What stops the entering variable.
 #[derive(Clone, Copy, Debug)]
@@ -22,8 +22,10 @@ pub(crate) enum Block {
 
 /// Runs the test for the column in `scratch.column`.
 pub(crate) fn block(core: &Core, entering: u32, direction: f64) -> Block {
+    let least = ratio_entry(core.scratch.column.largest());
     let mut reach = f64::INFINITY;
-    for (position, alpha) in core.scratch.column.iter() {
+    let blocking = || core.scratch.column.iter().filter(|(_, alpha)| alpha.abs() > least);
+    for (position, alpha) in blocking() {
         let length = room(core, position, direction * alpha, HARRIS_PRIMAL);
         if length < reach {
             reach = length;
@@ -31,7 +33,7 @@ pub(crate) fn block(core: &Core, entering: u32, direction: f64) -> Block {
     }
     let own = core.work_upper[entering as usize] - core.work_lower[entering as usize];
     let mut best: Option<(u32, f64, f64)> = None;
-    for (position, alpha) in core.scratch.column.iter() {
+    for (position, alpha) in blocking() {
         let length = room(core, position, direction * alpha, 0.0);
         let better = best.is_none_or(|held| {
             alpha.abs() > held.2 || (alpha.abs() == held.2 && position < held.0)
@@ -54,11 +56,9 @@ pub(crate) fn block(core: &Core, entering: u32, direction: f64) -> Block {
 fn room(core: &Core, position: u32, rate: f64, slack: f64) -> f64 {
     let value = core.basic[position as usize];
     let j = core.head[position as usize] as usize;
-    if rate > RATIO_ENTRY {
+    if rate > 0.0 {
         (value - core.work_lower[j] + slack) / rate
-    } else if rate < -RATIO_ENTRY {
-        (core.work_upper[j] - value + slack) / -rate
     } else {
-        f64::INFINITY
+        (core.work_upper[j] - value + slack) / -rate
     }
 }

@@ -98,6 +98,14 @@ impl SparseVector {
         self.index.clear();
     }
 
+    /// The largest size of a value.
+    pub(crate) fn largest(&self) -> f64 {
+        self.iter().fold(
+            0.0,
+            |largest, (_, value)| if value.abs() > largest { value.abs() } else { largest },
+        )
+    }
+
     /// The sum of squares.
     pub(crate) fn norm_squared(&self) -> f64 {
         self.iter().map(|(_, value)| value * value).sum()

@@ -85,7 +85,7 @@ pub(crate) fn of(square: &Square, unit: &str) -> Vec<String> {
 fn symmetry(square: &Square, scaled: &Scaled) -> String {
     let n = scaled.n;
     let (mut differ, mut one_way) = (0, 0);
-    let mut most: Option<(i128, usize, usize)> = None;
+    let mut most: Option<(i64, usize, usize)> = None;
     for i in 0..n {
         for j in i + 1..n {
             match (scaled.at(i, j), scaled.at(j, i)) {
@@ -145,11 +145,11 @@ fn triangle(square: &Square, scaled: &Scaled) -> String {
 
 /// Sentences on zero, negative and huge values.
 fn odd_values(square: &Square, scaled: &Scaled) -> Vec<String> {
-    let mut sorted: Vec<i128> = scaled.values.iter().flatten().copied().collect();
+    let mut sorted: Vec<i64> = scaled.values.iter().flatten().copied().collect();
     sorted.sort_unstable();
     let median = sorted.get(sorted.len() / 2).copied().unwrap_or(0);
     let mut facts = Vec::new();
-    let mut say = |one: &str, many: &str, advice: &str, odd: &dyn Fn(i128) -> bool| {
+    let mut say = |one: &str, many: &str, advice: &str, odd: &dyn Fn(i64) -> bool| {
         let count = sorted.iter().filter(|value| odd(**value)).count();
         let first = scaled.values.iter().position(|value| value.is_some_and(odd));
         if let Some(place) = first {
@@ -164,8 +164,9 @@ fn odd_values(square: &Square, scaled: &Scaled) -> Vec<String> {
     };
     say("costs nothing", "cost nothing", "", &|value| value == 0);
     say("is negative", "are negative", "", &|value| value < 0);
-    let huge = |value: i128| {
-        median > 0 && value / 100 >= median || value >= 10 * median && is_nines(&scaled.text(value))
+    let huge = |value: i64| {
+        median > 0 && value / 100 >= median
+            || value / 10 >= median && median > 0 && is_nines(&scaled.text(value))
     };
     let advice = ": if that stands for no drive, leave the cell blank";
     say("is huge", "are huge", advice, &huge);

@@ -112,20 +112,25 @@ impl Instance {
     pub fn round_trip(labels: Vec<String>, cells: &[Option<Number>]) -> Self {
         let n = labels.len();
         let at = |i: usize, j: usize| if i == j { None } else { cells.get(i * n + j)?.as_ref() };
-        let mut table = BTreeMap::new();
+        let pair = |i: usize, j: usize| vec![labels[i].clone(), labels[j].clone()];
         let (mut drives, mut edges, mut symmetric) = (Vec::new(), Vec::new(), true);
         for i in 0..n {
             for j in 0..n {
                 symmetric &= at(i, j) == at(j, i);
-                let Some(value) = at(i, j) else { continue };
-                let pair = vec![labels[i].clone(), labels[j].clone()];
-                if i < j {
-                    edges.push(pair.clone());
+                if at(i, j).is_some() {
+                    drives.push(pair(i, j));
                 }
-                drives.push(pair.clone());
-                table.insert(pair, value.clone());
             }
         }
+        if symmetric {
+            let ups = (0..n).flat_map(|i| (i + 1..n).map(move |j| (i, j)));
+            edges.extend(ups.filter(|&(i, j)| at(i, j).is_some()).map(|(i, j)| pair(i, j)));
+        }
+        // A map is built fast from entries in the order of its keys.
+        let mut sorted: Vec<usize> = (0..n).collect();
+        sorted.sort_by_key(|&i| &labels[i]);
+        let entries = sorted.iter().flat_map(|&i| sorted.iter().map(move |&j| (i, j)));
+        let table = entries.filter_map(|(i, j)| Some((pair(i, j), at(i, j)?.clone()))).collect();
         let root = labels.first().cloned();
         let mut instance = Self::new(Reader::Matrix);
         instance.set("V", Datum::Labels(labels));
@@ -180,11 +185,22 @@ impl Instance {
     pub fn matrix(&self) -> Vec<Option<&Number>> {
         let Some(Datum::Table { arity: 2, cells }) = self.get("c") else { return Vec::new() };
         let stops = self.stops();
-        let mut matrix = Vec::with_capacity(stops.len() * stops.len());
-        for from in stops {
-            for to in stops {
-                let pair = vec![from.clone(), to.clone()];
-                matrix.push(if from == to { None } else { cells.get(&pair) });
+        let places: BTreeMap<&str, usize> =
+            stops.iter().enumerate().map(|(place, stop)| (stop.as_str(), place)).collect();
+        let mut matrix = vec![None; stops.len() * stops.len()];
+        let mut last = None;
+        for (pair, number) in cells {
+            let [from, to] = pair.as_slice() else { continue };
+            // Keys come in order: the first of a pair is mostly that of the pair before.
+            let i = match last {
+                Some((label, i)) if label == from => i,
+                _ => places.get(from.as_str()).copied(),
+            };
+            last = Some((from, i));
+            if let (Some(i), Some(&j)) = (i, places.get(to.as_str()))
+                && i != j
+            {
+                matrix[i * stops.len() + j] = Some(number);
             }
         }
         matrix

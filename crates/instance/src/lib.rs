@@ -40,5 +40,5 @@ pub use read::{Reading, read};
 
 /// The longest text that is read, in bytes.
 pub const MAX_TEXT: usize = 8 << 20;
-/// The largest number of stops of a round trip.
-pub const MAX_STOPS: usize = 2_000;
+/// The largest number of stops of a round trip: a million drives fill some 250 MB.
+pub const MAX_STOPS: usize = 1_000;

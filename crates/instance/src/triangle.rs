@@ -14,12 +14,12 @@ pub(crate) const DRAWN: usize = 1_000_000;
 /// Distances as multiples of 1 / `denominator`.
 pub(crate) struct Scaled {
     pub(crate) n: usize,
-    pub(crate) values: Vec<Option<i128>>,
+    pub(crate) values: Vec<Option<i64>>,
     denominator: UBig,
 }
 
 impl Scaled {
-    /// `None` when the numbers are too long for sums in 128 bits.
+    /// `None` when the numbers are too long for sums in 64 bits.
     pub(crate) fn of(square: &Square) -> Option<Self> {
         let mut denominator = UBig::ONE;
         for number in square.cells.iter().flatten() {
@@ -31,8 +31,8 @@ impl Scaled {
         }
         let scale = |number: &RBig| {
             let factor = IBig::from(&denominator / number.denominator());
-            let value = i128::try_from(number.numerator() * factor).ok()?;
-            (value.unsigned_abs() < 1 << 120).then_some(value)
+            let value = i64::try_from(number.numerator() * factor).ok()?;
+            (value.unsigned_abs() < 1 << 60).then_some(value)
         };
         let mut values = Vec::with_capacity(square.cells.len());
         for cell in &square.cells {
@@ -44,12 +44,12 @@ impl Scaled {
         Some(Self { n: square.len(), values, denominator })
     }
 
-    pub(crate) fn at(&self, i: usize, j: usize) -> Option<i128> {
+    pub(crate) fn at(&self, i: usize, j: usize) -> Option<i64> {
         self.values[i * self.n + j]
     }
 
     /// A multiple as a number in words.
-    pub(crate) fn text(&self, value: i128) -> String {
+    pub(crate) fn text(&self, value: i64) -> String {
         number_text(&RBig::from_parts(IBig::from(value), self.denominator.clone()))
     }
 }
@@ -61,18 +61,35 @@ pub(crate) struct Triangles {
     pub(crate) examined: usize,
     pub(crate) broken: usize,
     /// The excess and the stops from, by way of, to of the worst one.
-    pub(crate) worst: Option<(i128, [usize; 3])>,
+    pub(crate) worst: Option<(i64, [usize; 3])>,
 }
 
 impl Triangles {
+    /// Looks at every triple from `i` by way of `k`.
+    fn look_by_way_of(&mut self, scaled: &Scaled, i: usize, k: usize) {
+        let n = scaled.n;
+        let Some(first) = scaled.at(i, k) else { return };
+        let direct = &scaled.values[i * n..(i + 1) * n];
+        let second = &scaled.values[k * n..(k + 1) * n];
+        // The diagonal holds nothing, so i = j and k = j drop out.
+        for (j, pair) in direct.iter().zip(second).enumerate() {
+            if let (Some(direct), Some(second)) = pair {
+                self.count(direct - first - second, [i, k, j]);
+            }
+        }
+    }
+
     fn look(&mut self, scaled: &Scaled, [i, k, j]: [usize; 3]) {
         let (Some(direct), Some(first), Some(second)) =
             (scaled.at(i, j), scaled.at(i, k), scaled.at(k, j))
         else {
             return;
         };
+        self.count(direct - first - second, [i, k, j]);
+    }
+
+    fn count(&mut self, excess: i64, [i, k, j]: [usize; 3]) {
         self.examined += 1;
-        let excess = direct - first - second;
         if excess > 0 {
             self.broken += 1;
             if self.worst.is_none_or(|(most, _)| excess > most) {
@@ -90,9 +107,7 @@ pub(crate) fn triangles(scaled: &Scaled) -> Triangles {
     if n <= EVERY_TRIPLE {
         for i in 0..n {
             for k in (0..n).filter(|&k| k != i) {
-                for j in (0..n).filter(|&j| j != i && j != k) {
-                    found.look(scaled, [i, k, j]);
-                }
+                found.look_by_way_of(scaled, i, k);
             }
         }
         return found;

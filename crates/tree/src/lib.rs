@@ -1,1 +1,74 @@
 //! Branch and cut, one slice at a time.
+//!
+//! A [`Search`] takes an exact model and finds its best solution by branch and bound (Land, Doig
+//! 1960) over its LP relaxation, with the families on demand separated at every node. It holds no
+//! clock and calls nothing back: [`Search::advance`] does about so much work and says how far it
+//! came, down to inside one LP; what happened is read with [`Search::take_events`]. The events are
+//! the same for every slicing.
+//!
+//! ```
+//! use std::rc::Rc;
+//! use model::{ColumnSpec, ModelBuilder, Number, Row, Sense};
+//! use hullward_tree::{Progress, Search, Settings, Status};
+//!
+//! // max 3x + 2y, 2x + 2y ≤ 3, both 0 or 1
+//! let mut builder = ModelBuilder::new("two things", Sense::Maximise);
+//! let spec = |cost: i32| ColumnSpec {
+//!     lower: Some(Number::ZERO), upper: Some(Number::ONE), cost: Number::from(cost), integer: true,
+//! };
+//! let x = builder.column(&[], &spec(3))?;
+//! let y = builder.column(&[], &spec(2))?;
+//! let two = Number::from(2);
+//! builder.row(&[], Row { entries: vec![(x, two.clone()), (y, two)], lower: None, upper: Some(Number::from(3)) })?;
+//!
+//! let mut search = Search::new(Rc::new(builder.build()), Settings::default());
+//! while search.advance(1_000) != Progress::RootSolved {}
+//! assert_eq!(search.root().and_then(|root| root.bound), Some(4.0));
+//! search.run(None);
+//! while search.advance(1_000) != Progress::Finished {}
+//! let summary = search.summary();
+//! assert_eq!((summary.status, summary.incumbent, summary.checked), (Status::Optimal, Some(3.0), true));
+//! # Ok::<(), model::ModelError>(())
+//! ```
+//!
+//! | item | use it for |
+//! |---|---|
+//! | [`Settings`] | rules and limits |
+//! | [`Search`] | running: `advance`, `run`, `pause`, `stop` |
+//! | [`RootResult`], [`Summary`] | what came out |
+//! | [`Event`] | what happened, in order |
+//! | [`Search::inspect`] | one node in full |
+//!
+//! **What is trusted.** A node is closed by floating-point arithmetic with the tolerances that
+//! each file names; each leaf is then checked in exact arithmetic and counted as checked or not.
+//! An LP point is a solution only after an exact check of every row and family. A node that
+//! cannot be solved keeps its parent's bound, and the search then does not claim an optimum.
+
+mod branching;
+mod decide;
+mod event;
+mod inspect;
+mod node;
+mod open;
+mod propose;
+mod relaxation;
+mod root;
+mod round_trip;
+mod rounds;
+mod search;
+mod settings;
+mod solution;
+mod summary;
+mod target;
+mod tour;
+mod work;
+
+pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
+pub use inspect::{NodeView, ViolatedSubset};
+pub use root::{RootResult, Status};
+pub use search::{Progress, Search, Work};
+pub use settings::{Branching, Selection, Settings};
+pub use summary::Summary;
+
+#[cfg(test)]
+mod tests;

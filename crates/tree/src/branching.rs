@@ -1,0 +1,220 @@
+//! Which column to branch on, and what has been learnt of each.
+//!
+//! Pseudocosts (Bénichou et al. 1971): the gain of the bound for each unit that a column is
+//! moved down or up, as a mean over the branchings seen.
+
+use model::{ColumnId, Model};
+
+use crate::event::{Branch, Side};
+use crate::settings::Branching;
+
+/// How far from a whole number a value counts as fractional.
+pub(crate) const INTEGRALITY: f64 = 1e-6;
+
+/// Scores that differ by less are ties.
+const TIE: f64 = 1e-9;
+
+/// The least score of a side, so that a side without gain does not hide the other
+/// (Achterberg, Koch, Martin 2005).
+const LEAST_GAIN: f64 = 1e-6;
+
+/// A column to branch on: `column ≤ floor` and `column ≥ floor + 1`.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(crate) struct Choice {
+    pub(crate) column: ColumnId,
+    /// Its value in the relaxation.
+    pub(crate) value: f64,
+    /// The largest value of the lower side.
+    pub(crate) floor: f64,
+}
+
+impl Choice {
+    fn new(column: ColumnId, value: f64) -> Self {
+        Self { column, value, floor: value.floor() }
+    }
+
+    /// The two branchings with how far each moves the column.
+    pub(crate) fn sides(&self) -> [(Branch, f64); 2] {
+        let ceiling = self.floor + 1.0;
+        let down = Branch { column: self.column, side: Side::AtMost, bound: self.floor + 0.0 };
+        let up = Branch { column: self.column, side: Side::AtLeast, bound: ceiling + 0.0 };
+        [(down, (self.value - self.floor).abs()), (up, (ceiling - self.value).abs())]
+    }
+}
+
+/// Gains seen on one side of one column.
+#[derive(Debug, Clone, Copy, Default)]
+struct Gain {
+    sum: f64,
+    count: u32,
+}
+
+impl Gain {
+    fn note(&mut self, gain: f64) {
+        self.sum += gain;
+        self.count += 1;
+    }
+
+    fn mean(self) -> Option<f64> {
+        (self.count > 0).then(|| self.sum / f64::from(self.count))
+    }
+}
+
+/// What has been learnt, and the whole columns.
+#[derive(Debug)]
+pub(crate) struct Chooser {
+    whole: Vec<ColumnId>,
+    down: Vec<Gain>,
+    up: Vec<Gain>,
+    all_down: Gain,
+    all_up: Gain,
+}
+
+impl Chooser {
+    pub(crate) fn new(model: &Model) -> Self {
+        let columns = model.columns();
+        let whole =
+            (0..columns.len()).filter(|&j| columns[j].integer).map(ColumnId::from_index).collect();
+        let none = vec![Gain::default(); columns.len()];
+        Self {
+            whole,
+            down: none.clone(),
+            up: none,
+            all_down: Gain::default(),
+            all_up: Gain::default(),
+        }
+    }
+
+    /// Notes that a branching that moved a column by `distance` raised the bound by `gain`.
+    pub(crate) fn learn(&mut self, branch: &Branch, distance: f64, gain: f64) {
+        if distance < INTEGRALITY || !gain.is_finite() {
+            return;
+        }
+        let unit = if gain > 0.0 { gain / distance } else { 0.0 };
+        let (one, all) = match branch.side {
+            Side::AtMost => (&mut self.down, &mut self.all_down),
+            Side::AtLeast => (&mut self.up, &mut self.all_up),
+        };
+        one[branch.column.index()].note(unit);
+        all.note(unit);
+    }
+
+    /// How many whole columns have a fractional value.
+    pub(crate) fn fractional(&self, x: &[f64]) -> u32 {
+        let count = self.whole.iter().filter(|j| is_fractional(x[j.index()])).count();
+        u32::try_from(count).unwrap_or(u32::MAX)
+    }
+
+    /// The fractional column that `rule` prefers; ties go to the lower column.
+    pub(crate) fn choose(&self, rule: Branching, x: &[f64]) -> Option<Choice> {
+        let mut best: Option<(f64, Choice)> = None;
+        for &column in self.whole.iter().filter(|j| is_fractional(x[j.index()])) {
+            let choice = Choice::new(column, x[column.index()]);
+            let score = match rule {
+                Branching::MostFractional => {
+                    smaller(choice.value - choice.floor, choice.floor + 1.0 - choice.value)
+                }
+                Branching::Pseudocost => self.score(&choice),
+            };
+            if best.is_none_or(|(top, _)| score > top + TIE * (1.0 + top)) {
+                best = Some((score, choice));
+            }
+        }
+        best.map(|(_, choice)| choice)
+    }
+
+    /// The product of the expected gains of both sides.
+    fn score(&self, choice: &Choice) -> f64 {
+        let fraction = choice.value - choice.floor;
+        let j = choice.column.index();
+        let expected = |one: Gain, all: Gain| one.mean().or(all.mean()).unwrap_or(1.0);
+        let down = expected(self.down[j], self.all_down) * fraction;
+        let up = expected(self.up[j], self.all_up) * (1.0 - fraction);
+        larger(down, LEAST_GAIN) * larger(up, LEAST_GAIN)
+    }
+
+    /// A column to branch on where no value is fractional and still the point is no
+    /// solution: the first whole column that is not fixed, split next to its value.
+    pub(crate) fn any(&self, x: &[f64], bounds: impl Fn(ColumnId) -> (f64, f64)) -> Option<Choice> {
+        self.whole.iter().find_map(|&column| {
+            let (lower, upper) = bounds(column);
+            let value = x[column.index()];
+            let near = value.round();
+            if lower >= upper {
+                None
+            } else if near >= upper {
+                Some(Choice { column, value, floor: near - 1.0 })
+            } else {
+                Some(Choice { column, value, floor: near })
+            }
+        })
+    }
+
+    /// The whole columns in order.
+    pub(crate) fn whole(&self) -> &[ColumnId] {
+        &self.whole
+    }
+}
+
+/// Whether a value of a whole column is fractional.
+pub(crate) fn is_fractional(value: f64) -> bool {
+    (value - value.round()).abs() > INTEGRALITY
+}
+
+fn smaller(a: f64, b: f64) -> f64 {
+    if a < b { a } else { b }
+}
+
+fn larger(a: f64, b: f64) -> f64 {
+    if a > b { a } else { b }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use model::{ColumnSpec, ModelBuilder, Number, Sense};
+
+    fn chooser(columns: usize) -> Chooser {
+        let mut builder = ModelBuilder::new("t", Sense::Minimise);
+        let spec = ColumnSpec {
+            lower: Some(Number::ZERO),
+            upper: None,
+            cost: Number::ZERO,
+            integer: true,
+        };
+        for _ in 0..columns {
+            builder.column(&[], &spec).unwrap();
+        }
+        Chooser::new(&builder.build())
+    }
+
+    #[test]
+    fn most_fractional_breaks_ties_by_the_column() {
+        let x = [1.0, 2.25, 0.4, 3.6, 0.4 + 1e-12];
+        let choice = chooser(5).choose(Branching::MostFractional, &x).unwrap();
+        assert_eq!((choice.column, choice.floor), (ColumnId(2), 0.0));
+        assert_eq!(chooser(2).choose(Branching::MostFractional, &[1.0, 2.0 + 1e-8]), None);
+    }
+
+    #[test]
+    fn pseudocosts_start_as_most_fractional_and_then_learn() {
+        let mut chooser = chooser(3);
+        let x = [0.3, 0.5, 0.3];
+        assert_eq!(chooser.choose(Branching::Pseudocost, &x).unwrap().column, ColumnId(1));
+        for side in [Side::AtMost, Side::AtLeast] {
+            chooser.learn(&Branch { column: ColumnId(1), side, bound: 0.0 }, 0.5, 0.5);
+            chooser.learn(&Branch { column: ColumnId(2), side, bound: 0.0 }, 0.5, 10.0);
+        }
+        assert_eq!(chooser.choose(Branching::Pseudocost, &x).unwrap().column, ColumnId(2));
+    }
+
+    #[test]
+    fn any_splits_the_range_so_that_both_sides_are_smaller() {
+        let chooser = chooser(3);
+        let bounds = [(1.0, 1.0), (0.0, 3.0), (0.0, 1.0)];
+        let of = |c: ColumnId| bounds[c.index()];
+        assert_eq!(chooser.any(&[1.0, 2.0, 0.0], of).unwrap().floor, 2.0);
+        assert_eq!(chooser.any(&[1.0, 3.0, 0.0], of).unwrap().floor, 2.0);
+        assert_eq!(chooser.any(&[1.0, 3.0, 0.0], |_| (1.0, 1.0)), None);
+    }
+}

@@ -1,0 +1,243 @@
+//! What becomes of a node once its relaxation is solved, and the account of leaves.
+
+use model::ColumnId;
+
+use crate::branching::Choice;
+use crate::event::{Event, NodeId, NodeState};
+use crate::search::{Hand, Job, PointInHand, Progress, Search};
+
+/// How far the value of a solution may be over the bound of the node whose point it is, for the
+/// node to be closed; relative to max(1, |value|). Such a leaf counts as unchecked unless
+/// it is proved.
+const ROUNDED: f64 = 1e-6;
+
+/// What the `Solved` event says beside the node.
+struct Verdict {
+    state: NodeState,
+    bound: Option<f64>,
+    fractional: u32,
+    branch_column: Option<ColumnId>,
+}
+
+impl Search {
+    /// The node in hand is solved and its candidates are tried: close it or branch.
+    pub(crate) fn decide(&mut self) -> Option<Progress> {
+        self.job = Job::None;
+        let hand = self.hand.take()?;
+        let point = hand.point.as_ref()?;
+        let closed = self.closed(&hand, point);
+        let choice = if closed { None } else { self.choice(&point.x) };
+        let state = match (closed, choice, hand.accepted) {
+            (true, _, Some(_)) | (false, None, Some(_)) => NodeState::Integer,
+            (true, _, None) => NodeState::Pruned,
+            (false, Some(_), _) => NodeState::Branched,
+            (false, None, None) => {
+                self.hand = Some(hand);
+                return self.unsolved("its point breaks a row by more than the tolerance");
+            }
+        };
+        let inherited = self.record(&hand, point, state);
+        let root = hand.node == NodeId::ROOT;
+        let state = if root && state == NodeState::Branched && !self.settings.search {
+            NodeState::Open
+        } else {
+            state
+        };
+        let verdict = Verdict {
+            state,
+            bound: Some(self.user(point.bound)),
+            fractional: self.chooser.fractional(&point.x),
+            branch_column: choice
+                .map(|choice| choice.column)
+                .filter(|_| state == NodeState::Branched),
+        };
+        self.solved(&hand, &verdict);
+        if root {
+            return self.root_decided(hand, choice);
+        }
+        match choice {
+            Some(choice) => self.branch(hand.node, inherited, &choice),
+            None => self.leaf(hand.node),
+        }
+        self.announce();
+        None
+    }
+
+    fn closed(&self, hand: &Hand, point: &PointInHand) -> bool {
+        let near = |value: f64| {
+            let size = if value.abs() > 1.0 { value.abs() } else { 1.0 };
+            point.bound >= value - ROUNDED * size
+        };
+        self.target.closes(point.bound) || hand.accepted.is_some_and(near)
+    }
+
+    fn choice(&self, x: &[f64]) -> Option<Choice> {
+        let simplex = &self.relaxation.as_ref()?.simplex;
+        let chosen = self.chooser.choose(self.settings.branching, x);
+        chosen.or_else(|| self.chooser.any(x, |column| simplex.bounds(lp::Col(column.0))))
+    }
+
+    /// Writes what was found into the node, and learns from it. Gives the bound for its
+    /// children: its own, or one of its ancestors' where that is better by rounding.
+    fn record(&mut self, hand: &Hand, point: &PointInHand, state: NodeState) -> f64 {
+        let Some(relaxation) = &self.relaxation else { return point.bound };
+        let proved = relaxation.proved(&point.duals);
+        self.ledger.ticks += point.x.len() as u64;
+        let parent = self.tree.node(hand.node).parent();
+        let above = parent.map(|parent| self.tree.node(parent).bound);
+        let node = self.tree.node_mut(hand.node);
+        if let (Some(above), Some(branch)) = (above, node.branch()) {
+            self.chooser.learn(&branch, node.distance, point.bound - above);
+        }
+        let inherited = larger(node.bound, point.bound);
+        node.bound = point.bound;
+        node.proved = larger(node.proved, proved);
+        node.state = state;
+        node.rows = u32::try_from(relaxation.row_count()).unwrap_or(u32::MAX);
+        node.basis = Some(Box::new(relaxation.simplex.basis()));
+        inherited
+    }
+
+    /// Says that the node in hand is solved.
+    fn solved(&mut self, hand: &Hand, verdict: &Verdict) {
+        let iterations =
+            self.relaxation.as_ref().map_or(0, |relaxation| relaxation.simplex.stats().iterations);
+        self.ledger.nodes += 1;
+        self.quota =
+            self.quota.map(|left| left.saturating_sub(u32::from(hand.node != NodeId::ROOT)));
+        self.events.push(Event::Solved {
+            node: hand.node,
+            state: verdict.state,
+            bound: verdict.bound,
+            fractional: verdict.fractional,
+            iterations: u32::try_from(iterations - hand.iterations_before).unwrap_or(u32::MAX),
+            rows_added: hand.rows_added,
+            branch_column: verdict.branch_column,
+        });
+    }
+
+    /// Makes the two children of a node.
+    pub(crate) fn branch(&mut self, node: NodeId, bound: f64, choice: &Choice) {
+        for (branch, distance) in choice.sides() {
+            let child = self.tree.child(node, branch, distance, bound);
+            self.open.insert(child, bound);
+            self.events.push(Event::Created {
+                node: child,
+                parent: Some(node),
+                branching: Some(branch),
+            });
+        }
+    }
+
+    /// Counts a leaf that was closed by its value.
+    pub(crate) fn leaf(&mut self, node: NodeId) {
+        self.ledger.pruned = true;
+        let checked = self.target.proves(self.tree.node(node).proved);
+        self.count(checked);
+    }
+
+    fn count(&mut self, checked: bool) {
+        let counter = if checked {
+            &mut self.ledger.leaves_checked
+        } else {
+            &mut self.ledger.leaves_unchecked
+        };
+        *counter += 1;
+    }
+
+    /// The node in hand has no point, as `ray` says.
+    pub(crate) fn infeasible(&mut self, ray: &[f64]) -> Option<Progress> {
+        let hand = self.hand.take()?;
+        let relaxation = self.relaxation.as_ref()?;
+        let checked = relaxation.refutes(ray);
+        let node = self.tree.node_mut(hand.node);
+        node.state = NodeState::Infeasible;
+        node.rows = u32::try_from(relaxation.row_count()).unwrap_or(u32::MAX);
+        node.basis = Some(Box::new(relaxation.simplex.basis()));
+        self.ledger.ticks += ray.len() as u64;
+        self.count(checked);
+        self.close_without_bound(&hand, NodeState::Infeasible);
+        if hand.node == NodeId::ROOT {
+            return self.root_infeasible(&hand, ray, checked);
+        }
+        self.announce();
+        None
+    }
+
+    /// The node in hand cannot be solved: its parent's bound stands.
+    pub(crate) fn unsolved(&mut self, why: &str) -> Option<Progress> {
+        if self.hand.as_ref()?.node == NodeId::ROOT {
+            return self.root_stopped(why.to_owned());
+        }
+        let hand = self.hand.take()?;
+        self.tree.node_mut(hand.node).state = NodeState::Unsolved;
+        why.clone_into(&mut self.ledger.trouble);
+        self.ledger.unsolved.push(hand.node);
+        self.close_without_bound(&hand, NodeState::Unsolved);
+        self.announce();
+        None
+    }
+
+    /// Says that the node in hand ended without a bound of its own.
+    pub(crate) fn close_without_bound(&mut self, hand: &Hand, state: NodeState) {
+        self.job = Job::None;
+        self.solved(hand, &Verdict { state, bound: None, fractional: 0, branch_column: None });
+    }
+
+    /// Drops every open node that the best known value closes.
+    pub(crate) fn drop_closed(&mut self) {
+        let target = &self.target;
+        for node in self.open.drain(|bound| target.closes(bound)) {
+            self.drop_node(node);
+        }
+        self.announce();
+    }
+
+    /// Closes a node by its value without solving it.
+    pub(crate) fn drop_node(&mut self, node: NodeId) {
+        self.ledger.ticks += 1;
+        self.tree.node_mut(node).state = NodeState::Pruned;
+        self.events.push(Event::Dropped { node, state: NodeState::Pruned });
+        self.leaf(node);
+    }
+
+    /// At the end: nodes that could not be solved count as closed where their parent's bound
+    /// closes them.
+    pub(crate) fn settle(&mut self) {
+        let nodes = std::mem::take(&mut self.ledger.unsolved);
+        for node in nodes {
+            if self.target.closes(self.tree.node(node).bound) {
+                self.leaf(node);
+            } else {
+                self.ledger.unsolved.push(node);
+            }
+        }
+    }
+
+    /// Says the bound of the whole tree when it has risen.
+    pub(crate) fn announce(&mut self) {
+        let Some(bound) = self.global_bound().filter(|bound| bound.is_finite()) else { return };
+        if self.ledger.announced.is_none_or(|last| bound > last) {
+            self.ledger.announced = Some(bound);
+            self.events.push(Event::Bound { bound: self.user(bound), nodes: self.ledger.nodes });
+        }
+    }
+
+    /// The internal bound of the whole tree: the least over nodes that are not closed, and no
+    /// more than the best known value. `None` when there is neither.
+    pub(crate) fn global_bound(&self) -> Option<f64> {
+        let in_hand = self.hand.as_ref().map(|hand| self.tree.node(hand.node).bound);
+        let root = self.plan.map(|_| self.tree.node(NodeId::ROOT).bound);
+        let unsolved = self.ledger.unsolved.iter().map(|&node| self.tree.node(node).bound);
+        let open = [self.open.least(), in_hand, root, self.target.best()];
+        open.into_iter().flatten().chain(unsolved).reduce(smaller)
+    }
+}
+
+fn smaller(a: f64, b: f64) -> f64 {
+    if a < b { a } else { b }
+}
+
+fn larger(a: f64, b: f64) -> f64 {
+    if a > b { a } else { b }
+}

@@ -1,0 +1,172 @@
+//! A node in full, from its stored basis.
+//!
+//! The relaxation is built anew with the rows the node had, its bounds and its final basis. The
+//! kernel reports every optimum from a fresh factor of the basis, so the bound has the same
+//! bits as the one in the log.
+
+use std::collections::BTreeSet;
+
+use lp::{Limits, Outcome};
+use model::{LabelId, Number};
+use separate::{Progress, Separator};
+
+use crate::event::{Branch, NodeId, NodeState};
+use crate::relaxation::{RowOrigin, direction};
+use crate::search::Search;
+
+/// Arcs with less do not join stops.
+const SUPPORT: f64 = 1e-6;
+
+/// A set of labels and the member of a family that it violates.
+#[derive(Debug, Clone, PartialEq)]
+pub struct ViolatedSubset {
+    /// The family by name; `subtour` for parts of a round trip of a model without families
+    /// over subsets.
+    pub family: String,
+    /// The set.
+    pub subset: BTreeSet<LabelId>,
+    /// By how much the row is violated.
+    pub violation: f64,
+}
+
+/// A node in full.
+#[derive(Debug, Clone, PartialEq)]
+pub struct NodeView {
+    /// Its number.
+    pub node: NodeId,
+    /// How it stands.
+    pub state: NodeState,
+    /// Its depth; the root's is 0.
+    pub depth: u32,
+    /// Its own bound in the direction of the objective.
+    pub bound: Option<f64>,
+    /// The bound that its multipliers prove in exact arithmetic.
+    pub checked_bound: Option<Number>,
+    /// The branchings from the root to it.
+    pub path: Vec<Branch>,
+    /// The value of each column; empty when it has no point.
+    pub x: Vec<f64>,
+    /// The reduced cost of each column in the direction of the objective.
+    pub reduced_costs: Vec<f64>,
+    /// Sets whose member the point violates. In a model without families over subsets that holds
+    /// round trips: the sets that arcs with a value leave with less than 1 in all.
+    pub violated: Vec<ViolatedSubset>,
+    /// Rows of the ray of an infeasible node with their multipliers.
+    pub ray: Vec<(String, f64)>,
+}
+
+impl Search {
+    /// Shows a node; `None` when there is no such node. A node that is not solved has a path and
+    /// no more. One factor and one pass of separation.
+    #[must_use]
+    pub fn inspect(&mut self, id: NodeId) -> Option<NodeView> {
+        if !self.tree.has(id) {
+            return None;
+        }
+        let path = self.tree.path(id);
+        let node = self.tree.node(id);
+        let mut view = NodeView {
+            node: id,
+            state: node.state,
+            depth: node.depth,
+            bound: None,
+            checked_bound: None,
+            path,
+            x: Vec::new(),
+            reduced_costs: Vec::new(),
+            violated: Vec::new(),
+            ray: Vec::new(),
+        };
+        self.fill(&mut view);
+        Some(view)
+    }
+
+    fn fill(&self, view: &mut NodeView) {
+        let node = self.tree.node(view.node);
+        let (Some(relaxation), Some(basis)) = (&self.relaxation, &node.basis) else { return };
+        let Ok(mut simplex) = relaxation.rebuilt(node.rows as usize, &view.path) else { return };
+        simplex.load_basis(basis);
+        match simplex.solve(Limits::default()) {
+            Outcome::Optimal(solution) => {
+                view.bound = Some(self.user(relaxation.internal(solution.objective)));
+                view.checked_bound = relaxation.prove_at(&view.path, &solution.duals);
+                let direction = direction(&self.model);
+                view.reduced_costs =
+                    solution.reduced_costs.iter().map(|d| direction * d + 0.0).collect();
+                view.x.clone_from(&solution.x);
+                view.violated = self.violated(&view.x);
+            }
+            Outcome::Infeasible(ray) => view.ray = self.named_ray(&ray.multipliers),
+            Outcome::Unbounded { .. } | Outcome::Stopped { .. } => {}
+        }
+    }
+
+    /// The sets whose member a point violates.
+    fn violated(&self, x: &[f64]) -> Vec<ViolatedSubset> {
+        if !self.model.subset_families().is_empty() {
+            return self
+                .rounds
+                .separators()
+                .iter()
+                .flat_map(|separator| self.separated_by(separator, x))
+                .collect();
+        }
+        let Some(trip) = &self.trip else { return Vec::new() };
+        let parts = trip.parts(x, SUPPORT);
+        if parts.len() < 2 {
+            return Vec::new();
+        }
+        let set = |part: Vec<LabelId>| ViolatedSubset {
+            family: "subtour".to_owned(),
+            subset: part.into_iter().collect(),
+            violation: 1.0,
+        };
+        parts.into_iter().map(set).collect()
+    }
+
+    fn separated_by(&self, separator: &Separator, x: &[f64]) -> Vec<ViolatedSubset> {
+        let mut separator = separator.clone();
+        separator.start(x);
+        while separator.advance(u64::from(u32::MAX)) == Progress::Working {}
+        let family =
+            |id| self.model.families()[self.model.subset_family(id).family.index()].name.clone();
+        let found = separator.take().into_iter();
+        found
+            .map(|v| ViolatedSubset {
+                family: family(v.family),
+                subset: v.subset,
+                violation: v.violation,
+            })
+            .collect()
+    }
+
+    /// The rows of a ray that count, by name.
+    pub(crate) fn named_ray(&self, ray: &[f64]) -> Vec<(String, f64)> {
+        let Some(relaxation) = &self.relaxation else { return Vec::new() };
+        let rows = relaxation.origins().iter().zip(ray).filter(|&(_, &y)| y != 0.0);
+        rows.map(|(origin, &y)| (self.row_name(origin), y)).collect()
+    }
+
+    /// The name of a row of the relaxation: `order[Ash → Birch]`, `subtour{Ash, Birch}`.
+    fn row_name(&self, origin: &RowOrigin) -> String {
+        match origin {
+            RowOrigin::Written(row) => self.model.row_name(*row),
+            RowOrigin::Member { family, subset } => {
+                let of = self.model.subset_family(*family);
+                let name = |label: &LabelId| self.model.labels().name(*label).to_owned();
+                let outer: Vec<String> = of.tuple.iter().map(name).collect();
+                let outer = if outer.is_empty() {
+                    String::new()
+                } else {
+                    format!("[{}]", outer.join(", "))
+                };
+                let set: Vec<String> = subset.iter().map(name).collect();
+                format!(
+                    "{}{outer}{{{}}}",
+                    self.model.families()[of.family.index()].name,
+                    set.join(", ")
+                )
+            }
+        }
+    }
+}

@@ -1,0 +1,155 @@
+//! The tree of nodes: one small record a node, in the order of creation.
+//!
+//! A record is 64 bytes beside its final basis, which is packed in 2 bits a variable. Bounds in
+//! the tree are internal: for a minimisation, offset included.
+
+use lp::Basis;
+use model::ColumnId;
+
+use crate::event::{Branch, NodeId, NodeState, Side};
+
+/// One node.
+#[derive(Debug)]
+pub(crate) struct Node {
+    /// The final basis of its relaxation, once solved.
+    pub(crate) basis: Option<Box<Basis>>,
+    /// Its own bound once it has one; before that the best its ancestors gave.
+    pub(crate) bound: f64,
+    /// A bound proved in exact arithmetic for it or an ancestor, rounded to the safe side.
+    pub(crate) proved: f64,
+    /// The new bound of the branching column.
+    pub(crate) branch_bound: f64,
+    /// How far the branching moved the column from its value at the parent.
+    pub(crate) distance: f64,
+    /// The branching column.
+    pub(crate) column: ColumnId,
+    /// The number of its parent; 0 for the root.
+    pub(crate) parent: u32,
+    /// How many rows its relaxation had when the basis was taken.
+    pub(crate) rows: u32,
+    /// Its depth; the root's is 0.
+    pub(crate) depth: u32,
+    /// How it stands.
+    pub(crate) state: NodeState,
+    /// Which side of the branching it is.
+    pub(crate) side: Side,
+}
+
+impl Node {
+    /// The branching that made it; `None` for the root.
+    pub(crate) fn branch(&self) -> Option<Branch> {
+        (self.parent != 0).then_some(Branch {
+            column: self.column,
+            side: self.side,
+            bound: self.branch_bound,
+        })
+    }
+
+    /// Its parent; `None` for the root.
+    pub(crate) fn parent(&self) -> Option<NodeId> {
+        (self.parent != 0).then_some(NodeId(self.parent))
+    }
+}
+
+/// All nodes.
+#[derive(Debug, Default)]
+pub(crate) struct Tree {
+    nodes: Vec<Node>,
+}
+
+impl Tree {
+    /// A tree of the root alone.
+    pub(crate) fn new() -> Self {
+        let mut tree = Self::default();
+        tree.nodes.push(Node {
+            basis: None,
+            bound: f64::NEG_INFINITY,
+            proved: f64::NEG_INFINITY,
+            branch_bound: 0.0,
+            distance: 0.0,
+            column: ColumnId(0),
+            parent: 0,
+            rows: 0,
+            depth: 0,
+            state: NodeState::Open,
+            side: Side::AtMost,
+        });
+        tree
+    }
+
+    /// Makes a child of `parent` with the bound that it inherits.
+    pub(crate) fn child(
+        &mut self,
+        parent: NodeId,
+        branch: Branch,
+        distance: f64,
+        bound: f64,
+    ) -> NodeId {
+        let above = self.node(parent);
+        let node = Node {
+            basis: None,
+            bound,
+            proved: above.proved,
+            branch_bound: branch.bound,
+            distance,
+            column: branch.column,
+            parent: parent.0,
+            rows: 0,
+            depth: above.depth + 1,
+            state: NodeState::Open,
+            side: branch.side,
+        };
+        self.nodes.push(node);
+        NodeId(u32::try_from(self.nodes.len()).unwrap_or(u32::MAX))
+    }
+
+    /// The record of a node that exists.
+    pub(crate) fn node(&self, id: NodeId) -> &Node {
+        &self.nodes[id.0 as usize - 1]
+    }
+
+    /// The record of a node, to be changed.
+    pub(crate) fn node_mut(&mut self, id: NodeId) -> &mut Node {
+        &mut self.nodes[id.0 as usize - 1]
+    }
+
+    /// Whether there is such a node.
+    pub(crate) fn has(&self, id: NodeId) -> bool {
+        id.0 >= 1 && id.0 as usize <= self.nodes.len()
+    }
+
+    /// The branchings from the root to a node. `O(depth)`.
+    pub(crate) fn path(&self, id: NodeId) -> Vec<Branch> {
+        let mut path = Vec::with_capacity(self.node(id).depth as usize);
+        let mut at = Some(id);
+        while let Some(here) = at {
+            path.extend(self.node(here).branch());
+            at = self.node(here).parent();
+        }
+        path.reverse();
+        path
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_record_is_small() {
+        assert!(size_of::<Node>() <= 64, "{} bytes", size_of::<Node>());
+    }
+
+    #[test]
+    fn the_path_runs_from_the_root() {
+        let mut tree = Tree::new();
+        let down = Branch { column: ColumnId(3), side: Side::AtMost, bound: 0.0 };
+        let up = Branch { column: ColumnId(1), side: Side::AtLeast, bound: 2.0 };
+        let child = tree.child(NodeId::ROOT, down, 0.5, 1.0);
+        let grandchild = tree.child(child, up, 0.5, 2.0);
+        assert_eq!(tree.path(grandchild), vec![down, up]);
+        assert_eq!(tree.node(grandchild).depth, 2);
+        assert!(tree.path(NodeId::ROOT).is_empty());
+        assert!(!tree.has(NodeId(0)) && !tree.has(NodeId(4)));
+    }
+}

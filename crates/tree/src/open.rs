@@ -1,0 +1,107 @@
+//! The open nodes, in the order of either selection rule.
+
+use std::collections::BTreeSet;
+
+use crate::event::NodeId;
+use crate::settings::Selection;
+
+/// Open nodes with their bounds. Every operation is `O(log n)`.
+#[derive(Debug, Default)]
+pub(crate) struct Open {
+    by_bound: BTreeSet<(u64, NodeId)>,
+    by_number: BTreeSet<NodeId>,
+}
+
+impl Open {
+    /// Adds a node with its bound.
+    pub(crate) fn insert(&mut self, node: NodeId, bound: f64) {
+        self.by_bound.insert((key(bound), node));
+        self.by_number.insert(node);
+    }
+
+    /// Takes out the node that `selection` wants next; `bound_of` gives a node's bound.
+    pub(crate) fn take(
+        &mut self,
+        selection: Selection,
+        bound_of: impl Fn(NodeId) -> f64,
+    ) -> Option<NodeId> {
+        let node = match selection {
+            Selection::BestBound => self.by_bound.first()?.1,
+            Selection::DepthFirst => *self.by_number.last()?,
+        };
+        self.by_bound.remove(&(key(bound_of(node)), node));
+        self.by_number.remove(&node);
+        Some(node)
+    }
+
+    /// Takes out every node whose bound `closes`, which must hold for all bounds from some
+    /// value on. In rising order of their numbers.
+    pub(crate) fn drain(&mut self, closes: impl Fn(f64) -> bool) -> Vec<NodeId> {
+        let mut gone = Vec::new();
+        while let Some(&(last, node)) = self.by_bound.last() {
+            if !closes(value(last)) {
+                break;
+            }
+            self.by_bound.pop_last();
+            self.by_number.remove(&node);
+            gone.push(node);
+        }
+        gone.sort();
+        gone
+    }
+
+    /// The smallest bound of an open node.
+    pub(crate) fn least(&self) -> Option<f64> {
+        self.by_bound.first().map(|&(first, _)| value(first))
+    }
+
+    /// How many nodes are open.
+    pub(crate) fn len(&self) -> u32 {
+        u32::try_from(self.by_bound.len()).unwrap_or(u32::MAX)
+    }
+}
+
+/// A whole number that is in the order of the (not NaN) float.
+fn key(bound: f64) -> u64 {
+    let bits = (bound + 0.0).to_bits();
+    if bits >> 63 == 1 { !bits } else { bits | (1 << 63) }
+}
+
+fn value(key: u64) -> f64 {
+    f64::from_bits(if key >> 63 == 1 { key & !(1 << 63) } else { !key })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn keys_keep_the_order_and_the_bits() {
+        let values = [f64::NEG_INFINITY, -3.5, -1e-300, 0.0, 1e-300, 2.0, 1e300, f64::INFINITY];
+        for pair in values.windows(2) {
+            assert!(key(pair[0]) < key(pair[1]), "{pair:?}");
+        }
+        assert!(values.iter().all(|&v| value(key(v)).to_bits() == v.to_bits()));
+        assert_eq!(key(-0.0), key(0.0));
+    }
+
+    #[test]
+    fn each_rule_takes_its_own() {
+        let bounds = [9.0, 7.0, 7.0, 8.0];
+        let bound_of = |n: NodeId| bounds[n.0 as usize - 1];
+        let fill = || {
+            let mut open = Open::default();
+            (1..=4).for_each(|n| open.insert(NodeId(n), bound_of(NodeId(n))));
+            open
+        };
+        let order = |selection| {
+            let mut open = fill();
+            std::iter::from_fn(|| open.take(selection, bound_of)).map(|n| n.0).collect::<Vec<_>>()
+        };
+        assert_eq!(order(Selection::BestBound), vec![2, 3, 4, 1]);
+        assert_eq!(order(Selection::DepthFirst), vec![4, 3, 2, 1]);
+        let mut open = fill();
+        assert_eq!(open.drain(|b| b >= 8.0), vec![NodeId(1), NodeId(4)]);
+        assert_eq!((open.len(), open.least()), (2, Some(7.0)));
+    }
+}

@@ -1,0 +1,137 @@
+//! Candidates for solutions: the relaxation's own point, its rounding, and round trips.
+
+use model::ColumnId;
+
+use crate::event::{Event, NodeId};
+use crate::relaxation::{Addition, RowOrigin};
+use crate::search::{Incumbent, Job, Progress, Purpose, Search};
+use crate::solution::{Solution, Verdict};
+use crate::target::signed;
+
+/// How near to the cut-off the first solution may be; relative to 1 + its size.
+const NEAR: f64 = 1e-9;
+
+impl Search {
+    /// The point in hand has no fraction: checks whether it is a solution.
+    pub(crate) fn propose(&mut self) -> Option<Progress> {
+        let x = &self.hand.as_ref()?.point.as_ref()?.x;
+        match self.checker.check(self.rounds.separators(), x) {
+            Verdict::Solution(solution) => self.take(solution, Purpose::Relaxation),
+            Verdict::Violates(violated) => self.tighten(Addition {
+                origin: RowOrigin::Member { family: violated.family, subset: violated.subset },
+                row: violated.row,
+            }),
+            Verdict::Broken => {
+                let rounded = self.checker.rounded(x);
+                self.complete(&rounded, Purpose::Relaxation)
+            }
+        }
+    }
+
+    /// Rounds a fractional point to the nearest whole numbers and checks it if it promises
+    /// anything.
+    pub(crate) fn round(&mut self, x: &[f64]) -> Option<Progress> {
+        let rounded = self.checker.rounded(x);
+        if rounded == self.last_rounding {
+            return self.proceed();
+        }
+        let best = self.target.best().filter(|_| self.incumbent.is_some());
+        let direction = crate::relaxation::direction(&self.model);
+        let worse = |value: f64| best.is_some_and(|best| direction * value >= best);
+        let promising = self.checker.promising(&rounded, |value| !worse(value));
+        self.last_rounding.clone_from(&rounded);
+        if !promising {
+            return self.proceed();
+        }
+        if self.checker.has_continuous() {
+            return self.complete(&rounded, Purpose::Rounding);
+        }
+        match self.checker.check(self.rounds.separators(), &rounded) {
+            Verdict::Solution(solution) => self.take(solution, Purpose::Rounding),
+            Verdict::Violates(_) | Verdict::Broken => self.proceed(),
+        }
+    }
+
+    /// The round-trip heuristic has ended: fixes the arcs and asks for the rest.
+    pub(crate) fn toured(&mut self) {
+        let Job::Tour(tour) = std::mem::replace(&mut self.job, Job::None) else { return };
+        self.ledger.ticks += tour.ticks();
+        let (Some(trip), Some(used)) = (&self.trip, tour.columns()) else { return };
+        let arcs = self.model.columns()[trip.arcs[0].2.index()].variable;
+        let columns = self.model.variables()[arcs.index()].columns.clone().map(ColumnId);
+        let value = |column: ColumnId| if used.contains(&column) { 1.0 } else { 0.0 };
+        let fixes: Vec<(ColumnId, f64)> = columns.map(|column| (column, value(column))).collect();
+        if fixes.len() < self.model.columns().len() {
+            if self.checker.begin(&fixes) {
+                self.job = Job::Complete(Purpose::Tour);
+            }
+            return;
+        }
+        let x: Vec<f64> = fixes.iter().map(|&(_, value)| value).collect();
+        if let Verdict::Solution(solution) = self.checker.check(self.rounds.separators(), &x) {
+            self.accept(solution, Purpose::Tour);
+        }
+    }
+
+    /// Solves the continuous part with the whole columns fixed, where there is one.
+    fn complete(&mut self, rounded: &[f64], purpose: Purpose) -> Option<Progress> {
+        let whole = self.chooser.whole().iter();
+        let fixes: Vec<(ColumnId, f64)> =
+            whole.map(|&column| (column, rounded[column.index()])).collect();
+        if self.checker.has_continuous() && self.checker.begin(&fixes) {
+            self.job = Job::Complete(purpose);
+            return None;
+        }
+        self.proceed()
+    }
+
+    /// The continuous part is solved, or there is no point.
+    pub(crate) fn completed(
+        &mut self,
+        purpose: Purpose,
+        point: Option<&[f64]>,
+    ) -> Option<Progress> {
+        self.job = Job::None;
+        let verdict = point.map(|x| self.checker.check(self.rounds.separators(), x));
+        match verdict {
+            Some(Verdict::Solution(solution)) => self.take(solution, purpose),
+            _ => self.proceed(),
+        }
+    }
+
+    /// A solution was found: takes it if it is the best and goes on.
+    fn take(&mut self, solution: Solution, purpose: Purpose) -> Option<Progress> {
+        let value = self.accept(solution, purpose);
+        if let (Purpose::Relaxation, Some(hand)) = (purpose, &mut self.hand) {
+            hand.accepted = Some(value);
+        }
+        self.proceed()
+    }
+
+    /// After a candidate: the node in hand is decided, or the opening goes on.
+    fn proceed(&mut self) -> Option<Progress> {
+        self.job = Job::None;
+        if self.hand.is_some() { self.decide() } else { None }
+    }
+
+    /// Takes a solution as the incumbent if it is the best, and closes the open nodes that
+    /// cannot be better. Gives its internal value.
+    fn accept(&mut self, solution: Solution, purpose: Purpose) -> f64 {
+        let exact = signed(&self.model, solution.value.clone());
+        let internal = model::nearest_f64(&exact);
+        let better = match (&self.incumbent, self.target.best()) {
+            (None, Some(cutoff)) => internal <= cutoff + NEAR * (1.0 + cutoff.abs()),
+            _ => self.target.improves(&exact),
+        };
+        if !better {
+            return internal;
+        }
+        let value = self.user(internal);
+        let node = self.hand.as_ref().map_or(NodeId::ROOT, |hand| hand.node);
+        self.incumbent = Some(Incumbent { solution, value });
+        self.events.push(Event::Incumbent { node, value, origin: purpose.origin() });
+        self.target.improve(exact);
+        self.drop_closed();
+        internal
+    }
+}

@@ -1,0 +1,149 @@
+//! The root relaxation: what it gave, and the step from it into the search.
+
+use model::Number;
+
+use crate::branching::Choice;
+use crate::event::{NodeId, NodeState};
+use crate::relaxation::direction;
+use crate::search::{Ending, Hand, Progress, Search, State};
+
+/// How a relaxation or a search stands.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Status {
+    /// Not at its end yet.
+    Running,
+    /// Solved to the end.
+    Optimal,
+    /// There is no point.
+    Infeasible,
+    /// The objective has no bound.
+    Unbounded,
+    /// A limit, or something that stood in the way, stopped it.
+    Limit,
+}
+
+/// The relaxation of the formulation as it is meant: families on demand separated.
+#[derive(Debug, Clone, PartialEq)]
+pub struct RootResult {
+    /// How it ended.
+    pub status: Status,
+    /// The bound in the direction of the objective, offset included.
+    pub bound: Option<f64>,
+    /// The bound that the multipliers prove in exact arithmetic.
+    pub checked_bound: Option<Number>,
+    /// Whether the bound or the infeasibility was proved in exact arithmetic.
+    pub checked: bool,
+    /// Simplex iterations.
+    pub iterations: u64,
+    /// Whole columns with a fractional value.
+    pub fractional: u32,
+    /// Rounds of separation that added rows.
+    pub rounds: u32,
+    /// Rows that separation added, one count a family of the model.
+    pub added: Vec<u32>,
+    /// The value of each column; empty unless optimal.
+    pub x: Vec<f64>,
+    /// The reduced cost of each column in the direction of the objective; empty unless optimal.
+    pub reduced_costs: Vec<f64>,
+    /// Rows of a Farkas ray with their multipliers, when infeasible.
+    pub ray: Vec<(String, f64)>,
+    /// What ended it early, when the status is a limit.
+    pub stopped: Option<String>,
+}
+
+impl Search {
+    fn root_result(&self, status: Status, hand: Option<&Hand>) -> RootResult {
+        RootResult {
+            status,
+            bound: None,
+            checked_bound: None,
+            checked: false,
+            iterations: self.relaxation.as_ref().map_or(0, |r| r.simplex.stats().iterations),
+            fractional: 0,
+            rounds: hand.map_or(0, |hand| hand.rounds),
+            added: self.root_added.clone(),
+            x: Vec::new(),
+            reduced_costs: Vec::new(),
+            ray: Vec::new(),
+            stopped: None,
+        }
+    }
+
+    /// The root is solved. Without a choice of a column it is a leaf and the search is over.
+    pub(crate) fn root_decided(&mut self, hand: Hand, choice: Option<Choice>) -> Option<Progress> {
+        let mut result = self.root_result(Status::Optimal, Some(&hand));
+        let point = hand.point?;
+        result.bound = Some(self.user(point.bound));
+        result.checked_bound = self.relaxation.as_ref().and_then(|r| r.prove(&point.duals));
+        result.checked = result.checked_bound.is_some();
+        result.fractional = self.chooser.fractional(&point.x);
+        let direction = direction(&self.model);
+        result.reduced_costs = point.reduced_costs.iter().map(|d| direction * d + 0.0).collect();
+        result.x = point.x;
+        self.root = Some(result);
+        self.job = crate::search::Job::None;
+        self.plan = choice;
+        match choice {
+            None => {
+                self.leaf(NodeId::ROOT);
+                self.end(Ending::Complete);
+            }
+            Some(_) if !self.settings.search => {
+                self.end(Ending::Stopped("no search was asked for".to_owned()));
+            }
+            Some(_) => self.state = State::Waiting,
+        }
+        self.announce();
+        Some(Progress::RootSolved)
+    }
+
+    pub(crate) fn root_infeasible(
+        &mut self,
+        hand: &Hand,
+        ray: &[f64],
+        checked: bool,
+    ) -> Option<Progress> {
+        let mut result = self.root_result(Status::Infeasible, Some(hand));
+        result.ray = self.named_ray(ray);
+        result.checked = checked;
+        self.root = Some(result);
+        self.end(Ending::Complete);
+        Some(Progress::RootSolved)
+    }
+
+    pub(crate) fn root_unbounded(&mut self) -> Option<Progress> {
+        self.root_over(Status::Unbounded, NodeState::Unbounded, Ending::Unbounded)
+    }
+
+    /// The root could not be solved.
+    pub(crate) fn root_stopped(&mut self, why: String) -> Option<Progress> {
+        self.root_over(Status::Limit, NodeState::Unsolved, Ending::Stopped(why))
+    }
+
+    fn root_over(&mut self, status: Status, state: NodeState, ending: Ending) -> Option<Progress> {
+        let hand = self.hand.take();
+        let mut result = self.root_result(status, hand.as_ref());
+        if let Ending::Stopped(why) = &ending {
+            result.stopped = Some(why.clone());
+        }
+        self.root = Some(result);
+        self.tree.node_mut(NodeId::ROOT).state = state;
+        if let Some(hand) = &hand {
+            self.close_without_bound(hand, state);
+        }
+        self.end(ending);
+        Some(Progress::RootSolved)
+    }
+
+    /// Leaves the root: branches, or drops it where a heuristic has closed it.
+    pub(crate) fn open_root(&mut self) {
+        let Some(choice) = self.plan.take() else { return };
+        let bound = self.tree.node(NodeId::ROOT).bound;
+        if self.target.closes(bound) {
+            self.drop_node(NodeId::ROOT);
+        } else {
+            self.branch(NodeId::ROOT, bound, &choice);
+        }
+        self.announce();
+    }
+}

@@ -1,0 +1,334 @@
+//! The search: what is in hand, what comes next, and the public face.
+//!
+//! A search is always doing one job, and each job can be left after any slice: the LP of the node
+//! in hand, one round of separation, the continuous part of a candidate, or the round-trip
+//! heuristic. What follows a job depends only on what it found, never on the slices.
+
+use std::rc::Rc;
+
+use model::Model;
+use separate::Separator;
+
+use crate::branching::{Choice, Chooser};
+use crate::event::{Event, NodeId, Origin};
+use crate::node::Tree;
+use crate::open::Open;
+use crate::relaxation::{Relaxation, direction};
+use crate::root::RootResult;
+use crate::round_trip::RoundTrip;
+use crate::rounds::Rounds;
+use crate::settings::Settings;
+use crate::solution::{Checker, Solution};
+use crate::target::{Target, decimal, signed};
+use crate::tour::TourSearch;
+
+/// How far [`Search::advance`] came.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Progress {
+    /// There is more to do.
+    Working,
+    /// The root relaxation is solved; the search waits for [`Search::run`]. Said once.
+    RootSolved,
+    /// The search stands still and can go on with [`Search::run`].
+    Paused,
+    /// The search has ended.
+    Finished,
+}
+
+/// What was spent so far and what is being done.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct Work {
+    /// Non-zeros touched: the same on every machine.
+    pub ticks: u64,
+    /// Simplex iterations.
+    pub iterations: u64,
+    /// What is being done, as a clause.
+    pub doing: &'static str,
+}
+
+/// Where the search stands.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) enum State {
+    Root,
+    Waiting,
+    Searching,
+    Finished(Ending),
+}
+
+/// How it ended.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) enum Ending {
+    /// Every leaf is closed.
+    Complete,
+    /// The root relaxation is unbounded.
+    Unbounded,
+    /// A limit, or something that stood in the way, in words.
+    Stopped(String),
+}
+
+/// The job in hand.
+#[derive(Debug)]
+pub(crate) enum Job {
+    None,
+    Relax,
+    Separate,
+    Complete(Purpose),
+    Tour(Box<TourSearch>),
+}
+
+/// Where a candidate for a solution comes from.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Purpose {
+    Relaxation,
+    Rounding,
+    Tour,
+}
+
+impl Purpose {
+    pub(crate) fn origin(self) -> Origin {
+        match self {
+            Self::Relaxation => Origin::Relaxation,
+            Self::Rounding => Origin::Rounding,
+            Self::Tour => Origin::Heuristic(crate::tour::NAME.to_owned()),
+        }
+    }
+}
+
+/// What is done between the root relaxation and the first branching.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Opening {
+    Tour,
+    Rounding,
+    Branch,
+    Done,
+}
+
+/// The relaxation's point at a node.
+#[derive(Debug, Clone)]
+pub(crate) struct PointInHand {
+    /// Internal, offset included.
+    pub(crate) bound: f64,
+    pub(crate) x: Vec<f64>,
+    pub(crate) reduced_costs: Vec<f64>,
+    pub(crate) duals: Vec<f64>,
+}
+
+/// The node in hand.
+#[derive(Debug)]
+pub(crate) struct Hand {
+    pub(crate) node: NodeId,
+    pub(crate) iterations_before: u64,
+    pub(crate) rows_added: u32,
+    pub(crate) rounds: u32,
+    /// The internal value of its relaxation's point, where that is a solution.
+    pub(crate) accepted: Option<f64>,
+    pub(crate) point: Option<PointInHand>,
+}
+
+/// The best solution.
+#[derive(Debug, Clone)]
+pub(crate) struct Incumbent {
+    pub(crate) solution: Solution,
+    /// Its value as the user reads it.
+    pub(crate) value: f64,
+}
+
+/// Counts and sums kept on the way.
+#[derive(Debug, Default)]
+pub(crate) struct Ledger {
+    /// Nodes solved.
+    pub(crate) nodes: u32,
+    pub(crate) leaves_checked: u32,
+    pub(crate) leaves_unchecked: u32,
+    /// The internal bound that was said last.
+    pub(crate) announced: Option<f64>,
+    /// Nodes that could not be solved, and why the last could not.
+    pub(crate) unsolved: Vec<NodeId>,
+    pub(crate) trouble: String,
+    /// Whether a leaf was closed by its value.
+    pub(crate) pruned: bool,
+    /// Work done outside of LP, separation and candidates.
+    pub(crate) ticks: u64,
+}
+
+/// Branch and cut over one model, one slice at a time. See the crate for an example.
+#[derive(Debug)]
+pub struct Search {
+    pub(crate) model: Rc<Model>,
+    pub(crate) settings: Settings,
+    pub(crate) relaxation: Option<Relaxation>,
+    pub(crate) rounds: Rounds,
+    pub(crate) checker: Checker,
+    pub(crate) chooser: Chooser,
+    pub(crate) trip: Option<Rc<RoundTrip>>,
+    pub(crate) tree: Tree,
+    pub(crate) open: Open,
+    pub(crate) target: Target,
+    pub(crate) incumbent: Option<Incumbent>,
+    pub(crate) root: Option<RootResult>,
+    pub(crate) root_added: Vec<u32>,
+    pub(crate) plan: Option<Choice>,
+    pub(crate) opening: Opening,
+    pub(crate) hand: Option<Hand>,
+    pub(crate) job: Job,
+    pub(crate) state: State,
+    pub(crate) quota: Option<u32>,
+    pub(crate) paused: bool,
+    pub(crate) last_rounding: Vec<f64>,
+    pub(crate) ledger: Ledger,
+    pub(crate) events: Vec<Event>,
+}
+
+impl Search {
+    /// A search that has done nothing yet. `O(non-zeros)`.
+    #[must_use]
+    pub fn new(model: Rc<Model>, settings: Settings) -> Self {
+        let mut target = Target::new(&model);
+        if let Some(value) = settings.cutoff.and_then(decimal) {
+            target.improve(signed(&model, value));
+        }
+        let relaxation = Relaxation::new(&model);
+        let mut search = Self {
+            rounds: Rounds::new(&model),
+            checker: Checker::new(&model),
+            chooser: Chooser::new(&model),
+            trip: RoundTrip::find(&model).map(Rc::new),
+            tree: Tree::new(),
+            open: Open::default(),
+            target,
+            incumbent: None,
+            root: None,
+            root_added: vec![0; model.families().len()],
+            plan: None,
+            opening: Opening::Tour,
+            hand: None,
+            job: Job::None,
+            state: State::Root,
+            quota: None,
+            paused: false,
+            last_rounding: Vec::new(),
+            ledger: Ledger::default(),
+            events: vec![Event::Created { node: NodeId::ROOT, parent: None, branching: None }],
+            relaxation: None,
+            model,
+            settings,
+        };
+        match relaxation {
+            Ok(relaxation) => search.relaxation = Some(relaxation),
+            Err(error) => search.ledger.trouble = error.to_string(),
+        }
+        search
+    }
+
+    /// Works on for about `ticks` non-zeros touched, at least one step.
+    pub fn advance(&mut self, ticks: u64) -> Progress {
+        let stop = self.work().ticks.saturating_add(ticks);
+        loop {
+            match self.state {
+                State::Finished(_) => return Progress::Finished,
+                State::Waiting => return Progress::Paused,
+                State::Root | State::Searching if self.paused => return Progress::Paused,
+                State::Root | State::Searching => {}
+            }
+            let now = self.work().ticks;
+            let done = self.step(stop.saturating_sub(now));
+            if let Some(progress) = done {
+                return progress;
+            }
+            if self.work().ticks >= stop {
+                return Progress::Working;
+            }
+        }
+    }
+
+    /// Searches on: to the end, or until `nodes` more are solved. Also ends a pause.
+    pub fn run(&mut self, nodes: Option<u32>) {
+        self.paused = false;
+        if self.state == State::Waiting {
+            self.state = State::Searching;
+        }
+        self.quota = nodes;
+    }
+
+    /// Stands still after the slice in hand; nothing is lost.
+    pub fn pause(&mut self) {
+        self.paused = true;
+    }
+
+    /// Gives up: the search ends as it stands.
+    pub fn stop(&mut self) {
+        if !matches!(self.state, State::Finished(_)) {
+            self.end(Ending::Stopped("stopped".to_owned()));
+        }
+    }
+
+    /// The events since they were last taken.
+    pub fn take_events(&mut self) -> Vec<Event> {
+        std::mem::take(&mut self.events)
+    }
+
+    /// The root relaxation, once it is solved.
+    #[must_use]
+    pub fn root(&self) -> Option<&RootResult> {
+        self.root.as_ref()
+    }
+
+    /// The model.
+    #[must_use]
+    pub fn model(&self) -> &Rc<Model> {
+        &self.model
+    }
+
+    /// How each family over subsets is separated, in the order of the model.
+    #[must_use]
+    pub fn separators(&self) -> &[Separator] {
+        self.rounds.separators()
+    }
+
+    /// What was spent so far and what is being done.
+    #[must_use]
+    pub fn work(&self) -> Work {
+        let stats = self.relaxation.as_ref().map(|relaxation| relaxation.simplex.stats());
+        let (ticks, iterations) = stats.map_or((0, 0), |stats| (stats.ticks, stats.iterations));
+        let tour = if let Job::Tour(tour) = &self.job { tour.ticks() } else { 0 };
+        Work {
+            ticks: self.ledger.ticks + ticks + self.rounds.ticks() + self.checker.ticks() + tour,
+            iterations: iterations + self.checker.iterations(),
+            doing: self.doing(),
+        }
+    }
+
+    fn doing(&self) -> &'static str {
+        match (&self.job, &self.state) {
+            (_, State::Finished(_)) => "finished",
+            (_, State::Waiting) => "waiting",
+            (Job::Relax, State::Root) => "solving the relaxation",
+            (Job::Relax, State::Searching) => "solving a node",
+            (Job::Separate, _) => "separating",
+            (Job::Complete(_), _) => "completing a solution",
+            (Job::Tour(_), _) => "looking for a round trip",
+            (Job::None, _) => "choosing",
+        }
+    }
+
+    /// Ends the search; a node in hand goes back to the open ones.
+    pub(crate) fn end(&mut self, ending: Ending) {
+        if let Some(hand) = self.hand.take() {
+            let bound = self.tree.node(hand.node).bound;
+            self.open.insert(hand.node, bound);
+        }
+        if ending == Ending::Complete {
+            self.settle();
+        }
+        if let Job::Tour(tour) = &self.job {
+            self.ledger.ticks += tour.ticks();
+        }
+        self.job = Job::None;
+        self.state = State::Finished(ending);
+    }
+
+    /// An internal value as the user reads it.
+    pub(crate) fn user(&self, internal: f64) -> f64 {
+        direction(&self.model) * internal + 0.0
+    }
+}

@@ -1,0 +1,180 @@
+//! Whether a point is a solution: exactly, against every row and every family.
+//!
+//! Whole columns are rounded to the nearest whole number and everything is evaluated in rationals.
+//! Where that breaks a row of a model with continuous columns, these are solved anew with the
+//! whole columns fixed. Families over subsets are asked by their exact membership check.
+
+use std::rc::Rc;
+
+use lp::{Col, Limits, Outcome, Progress, Simplex};
+use model::{ColumnId, Model, Number, RowId, nearest_f64};
+use proof::Point;
+use separate::{Membership, Separator, Violated};
+
+use crate::relaxation::{float_bounds, is_meant, problem};
+use crate::rounds::outside;
+
+/// By how much a row may be broken in a solution with continuous columns; absolute, in the
+/// units of the row. Such a solution counts as unchecked.
+const FEASIBILITY: f64 = 1e-6;
+
+/// A point that is a solution.
+#[derive(Debug, Clone)]
+pub(crate) struct Solution {
+    /// One value a column, the nearest floats.
+    pub(crate) x: Vec<f64>,
+    /// Its exact objective value, in the direction of the objective.
+    pub(crate) value: Number,
+    /// Whether it meets every row and family in exact arithmetic.
+    pub(crate) exact: bool,
+    /// Whether every family over subsets could say that it meets it.
+    pub(crate) member: bool,
+}
+
+/// What the check of a point found.
+#[derive(Debug)]
+pub(crate) enum Verdict {
+    /// It is a solution.
+    Solution(Solution),
+    /// It violates a member of a family over subsets.
+    Violates(Violated),
+    /// It breaks a row or a bound.
+    Broken,
+}
+
+/// Checks points of one model.
+#[derive(Debug)]
+pub(crate) struct Checker {
+    model: Rc<Model>,
+    /// The continuous part, made when it is first needed.
+    simplex: Option<Simplex>,
+    fixed: Vec<ColumnId>,
+    continuous: bool,
+    /// Rows without continuous columns.
+    whole_rows: Vec<RowId>,
+    /// Whether every column with a cost is whole.
+    whole_costs: bool,
+    ticks: u64,
+    iterations: u64,
+}
+
+impl Checker {
+    pub(crate) fn new(model: &Rc<Model>) -> Self {
+        let columns = model.columns();
+        let whole =
+            |row: &RowId| model.row_entries(*row).iter().all(|(c, _)| columns[c.index()].integer);
+        let rows =
+            (0..model.row_count()).map(RowId::from_index).filter(|&row| is_meant(model, row));
+        Self {
+            model: Rc::clone(model),
+            simplex: None,
+            fixed: Vec::new(),
+            continuous: columns.iter().any(|c| !c.integer),
+            whole_rows: rows.filter(whole).collect(),
+            whole_costs: columns
+                .iter()
+                .all(|c| c.integer || model.numbers().exact(c.cost).is_zero()),
+            ticks: 0,
+            iterations: 0,
+        }
+    }
+
+    /// Whether the model has continuous columns, so that a broken point may be mended.
+    pub(crate) fn has_continuous(&self) -> bool {
+        self.continuous
+    }
+
+    /// The point with its whole columns rounded.
+    pub(crate) fn rounded(&self, x: &[f64]) -> Vec<f64> {
+        let columns = self.model.columns().iter().zip(x);
+        columns.map(|(column, &v)| if column.integer { v.round() + 0.0 } else { v }).collect()
+    }
+
+    /// Checks a point exactly. `O(non-zeros)` and what the membership checks cost.
+    pub(crate) fn check(&self, separators: &[Separator], x: &[f64]) -> Verdict {
+        let rounded = self.rounded(x);
+        let mut member = true;
+        for separator in separators {
+            match separator.membership(&rounded) {
+                Membership::Satisfied => {}
+                Membership::Violated(violated) => return Verdict::Violates(violated),
+                Membership::Unknown => member = false,
+            }
+        }
+        let point = Point::new(&self.model, &rounded);
+        let exact = point.violations.is_empty();
+        if !exact && (!self.continuous || nearest_f64(&point.worst()) > FEASIBILITY) {
+            return Verdict::Broken;
+        }
+        let x = point.x.iter().map(nearest_f64).collect();
+        Verdict::Solution(Solution { x, value: point.objective, exact: exact && member, member })
+    }
+
+    /// Whether a rounded point is worth an exact check: no row over whole columns alone is
+    /// broken and the value, where it is known, `improves`. `O(non-zeros of those rows)`.
+    pub(crate) fn promising(&mut self, rounded: &[f64], improves: impl Fn(f64) -> bool) -> bool {
+        let numbers = self.model.numbers();
+        if self.whole_costs {
+            let terms = self.model.columns().iter().zip(rounded);
+            let value = terms.fold(nearest_f64(self.model.offset()), |sum, (c, x)| {
+                sum + numbers.float(c.cost) * x
+            });
+            if !improves(value) {
+                return false;
+            }
+        }
+        for &row in &self.whole_rows {
+            self.ticks += self.model.row_entries(row).len() as u64;
+            if outside(&self.model, row, rounded) > FEASIBILITY {
+                return false;
+            }
+        }
+        true
+    }
+
+    /// Begins to solve the rest of the columns with some fixed. False when the kernel refuses.
+    pub(crate) fn begin(&mut self, fixes: &[(ColumnId, f64)]) -> bool {
+        if self.simplex.is_none() {
+            let all = problem(&self.model, |row| is_meant(&self.model, row));
+            self.simplex = all.ok().map(Simplex::new);
+        }
+        let Some(simplex) = &mut self.simplex else { return false };
+        for column in self.fixed.drain(..) {
+            let (lower, upper) = float_bounds(&self.model, column);
+            simplex.set_bounds(Col(column.0), lower, upper);
+        }
+        for &(column, value) in fixes {
+            simplex.set_bounds(Col(column.0), value, value);
+            self.fixed.push(column);
+        }
+        simplex.start(Limits::default());
+        true
+    }
+
+    /// Works on for about `ticks`: `None` while there is more to do, then the point, if any.
+    pub(crate) fn advance(&mut self, ticks: u64) -> Option<Option<Vec<f64>>> {
+        let simplex = self.simplex.as_mut()?;
+        let before = simplex.stats();
+        let progress = simplex.advance(ticks);
+        let after = simplex.stats();
+        self.ticks += after.ticks - before.ticks;
+        self.iterations += after.iterations - before.iterations;
+        if progress == Progress::Working {
+            return None;
+        }
+        Some(match simplex.outcome() {
+            Some(Outcome::Optimal(solution)) => Some(solution.x.clone()),
+            _ => None,
+        })
+    }
+
+    /// Non-zeros touched so far.
+    pub(crate) fn ticks(&self) -> u64 {
+        self.ticks
+    }
+
+    /// Simplex iterations so far.
+    pub(crate) fn iterations(&self) -> u64 {
+        self.iterations
+    }
+}

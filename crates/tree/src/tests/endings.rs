@@ -1,0 +1,180 @@
+//! How a search can end: cut-offs, no point, no bound, limits.
+
+use std::rc::Rc;
+
+use model::{ColumnSpec, Model, ModelBuilder, Number, Sense};
+
+use super::support::{
+    Form, Random, best_trip, finish, random_model, round_trip, row, rules, run, spec, whole,
+};
+use crate::{Event, NodeState, Progress, Search, Settings, Status};
+
+fn trip() -> (Rc<Model>, f64) {
+    let costs = Random(31).distances(9);
+    (round_trip(&costs, Form::Labels, Sense::Minimise), best_trip(&costs) as f64)
+}
+
+#[test]
+fn a_cutoff_at_the_optimum_is_proved_or_met() {
+    let (model, best) = trip();
+    for settings in rules() {
+        let (_, summary) = run(&model, &Settings { cutoff: Some(best), ..settings }, u64::MAX);
+        assert_eq!((summary.status, summary.bound), (Status::Optimal, Some(best)));
+        assert!(summary.incumbent.is_none_or(|value| value == best), "{summary:?}");
+        assert!(summary.checked);
+    }
+}
+
+#[test]
+fn a_cutoff_under_the_optimum_leaves_no_incumbent() {
+    let (model, best) = trip();
+    let (events, summary) =
+        run(&model, &Settings { cutoff: Some(best - 1.0), ..Settings::default() }, u64::MAX);
+    assert_eq!(
+        (summary.status, summary.bound, summary.incumbent),
+        (Status::Optimal, Some(best - 1.0), None)
+    );
+    assert_eq!(summary.gap, None);
+    assert!(summary.solution.is_empty());
+    assert!(events.iter().all(|event| !matches!(event, Event::Incumbent { .. })));
+}
+
+#[test]
+fn a_cutoff_over_the_optimum_changes_nothing_but_the_tree() {
+    let (model, best) = trip();
+    let (_, summary) =
+        run(&model, &Settings { cutoff: Some(best + 5.0), ..Settings::default() }, u64::MAX);
+    assert_eq!((summary.status, summary.incumbent), (Status::Optimal, Some(best)));
+}
+
+#[test]
+fn an_infeasible_root_has_a_checked_ray() {
+    let mut builder = ModelBuilder::new("t", Sense::Minimise);
+    let x = builder.column(&[], &spec((0, 1), 1, true)).unwrap();
+    let y = builder.column(&[], &spec((0, 1), 1, false)).unwrap();
+    builder.row(&[], row(&[(x, 1), (y, 1)], Some(3), None)).unwrap();
+    builder.row(&[], row(&[(x, 1), (y, -1)], None, Some(5))).unwrap();
+    let mut search = Search::new(Rc::new(builder.build()), Settings::default());
+    assert_eq!(advance_far(&mut search), Progress::RootSolved);
+    let root = search.root().unwrap();
+    assert_eq!((root.status, root.checked, root.bound), (Status::Infeasible, true, None));
+    assert_eq!(root.ray.len(), 1);
+    assert_eq!(root.ray[0].0, "row 1");
+    assert_eq!(advance_far(&mut search), Progress::Finished);
+    let summary = search.summary();
+    assert_eq!((summary.status, summary.checked, summary.nodes), (Status::Infeasible, true, 1));
+    let view = search.inspect(crate::NodeId::ROOT).unwrap();
+    assert_eq!((view.state, view.ray.len()), (NodeState::Infeasible, 1));
+}
+
+#[test]
+fn a_model_without_whole_points_is_infeasible_after_a_search() {
+    // 2x + 2y = 1 with a slack of a third: the relaxation has points, no whole one is among them.
+    let mut builder = ModelBuilder::new("t", Sense::Maximise);
+    let x = builder.column(&[], &spec((0, 3), 1, true)).unwrap();
+    let y = builder.column(&[], &spec((0, 3), 2, true)).unwrap();
+    builder.row(&[], row(&[(x, 2), (y, 2)], Some(5), Some(5))).unwrap();
+    let model = Rc::new(builder.build());
+    for settings in rules() {
+        let (_, summary) = run(&model, &settings, u64::MAX);
+        assert_eq!(
+            (summary.status, summary.bound, summary.incumbent),
+            (Status::Infeasible, None, None)
+        );
+        assert!(summary.nodes > 1 && summary.checked);
+    }
+}
+
+#[test]
+fn an_unbounded_root_ends_the_search() {
+    let mut builder = ModelBuilder::new("t", Sense::Maximise);
+    let free = ColumnSpec { lower: Some(Number::ZERO), upper: None, cost: whole(1), integer: true };
+    let x = builder.column(&[], &free).unwrap();
+    let y = builder.column(&[], &free).unwrap();
+    builder.row(&[], row(&[(x, 1), (y, -1)], None, Some(2))).unwrap();
+    let (events, summary) = run(&Rc::new(builder.build()), &Settings::default(), u64::MAX);
+    assert_eq!((summary.status, summary.bound, summary.checked), (Status::Unbounded, None, false));
+    assert!(events.iter().any(|e| matches!(e, Event::Solved { state: NodeState::Unbounded, .. })));
+}
+
+#[test]
+fn limits_stop_and_say_so() {
+    let (model, best) = trip();
+    let (_, free) = run(&model, &Settings::default(), u64::MAX);
+    assert!(free.nodes > 10, "{free:?}");
+    let (_, summary) =
+        run(&model, &Settings { node_limit: Some(5), ..Settings::default() }, u64::MAX);
+    assert_eq!((summary.status, summary.nodes), (Status::Limit, 5));
+    assert_eq!(summary.stopped.as_deref(), Some("node limit"));
+    assert!(summary.bound.unwrap() <= best && summary.open > 0 && !summary.checked);
+
+    let half = free.iterations / 2;
+    let (events, summary) =
+        run(&model, &Settings { iteration_limit: Some(half), ..Settings::default() }, u64::MAX);
+    assert_eq!((summary.status, summary.iterations), (Status::Limit, half));
+    assert_eq!(summary.stopped.as_deref(), Some("iteration limit"));
+    assert!(summary.bound.unwrap() <= best);
+    let (same, _) =
+        run(&model, &Settings { iteration_limit: Some(half), ..Settings::default() }, 13);
+    assert_eq!(same, events);
+
+    let (_, summary) =
+        run(&model, &Settings { iteration_limit: Some(3), ..Settings::default() }, u64::MAX);
+    assert_eq!((summary.status, summary.bound, summary.nodes), (Status::Limit, None, 1));
+}
+
+#[test]
+fn stopping_keeps_what_is_known() {
+    let (model, best) = trip();
+    let mut search = Search::new(model, Settings::default());
+    assert_eq!(advance_far(&mut search), Progress::RootSolved);
+    search.run(Some(4));
+    assert_eq!(advance_far(&mut search), Progress::Paused);
+    search.run(None);
+    search.advance(40);
+    let before = search.summary();
+    search.stop();
+    let after = search.summary();
+    assert_eq!(search.advance(100), Progress::Finished);
+    assert_eq!((after.status, after.stopped.as_deref()), (Status::Limit, Some("stopped")));
+    assert_eq!((after.bound, after.open, after.nodes), (before.bound, before.open, before.nodes));
+    assert!(after.bound.unwrap() <= best);
+}
+
+#[test]
+fn without_a_search_only_the_root_is_solved() {
+    let (model, best) = trip();
+    let (events, summary) =
+        run(&model, &Settings { search: false, ..Settings::default() }, u64::MAX);
+    assert_eq!((summary.status, summary.nodes, summary.open), (Status::Limit, 1, 0));
+    assert!(summary.bound.unwrap() < best);
+    assert!(
+        events.iter().any(|e| matches!(
+            e,
+            Event::Solved { state: NodeState::Open, branch_column: None, .. }
+        ))
+    );
+}
+
+#[test]
+fn rows_on_demand_come_only_when_violated() {
+    let mut added = 0;
+    for seed in 300..320 {
+        let mut search = Search::new(random_model(seed, 7, 2), Settings::default());
+        finish(&mut search, u64::MAX);
+        let root = search.root().unwrap();
+        assert_eq!(root.added.iter().take(3).sum::<u32>(), 0);
+        assert!(root.added[3] <= 1);
+        added += root.added[3];
+    }
+    assert!((1..20).contains(&added), "{added}");
+}
+
+fn advance_far(search: &mut Search) -> Progress {
+    loop {
+        let progress = search.advance(1_000_000);
+        if progress != Progress::Working {
+            return progress;
+        }
+    }
+}

@@ -1,0 +1,41 @@
+//! Jeroslow's instance: a tree whose size is known.
+//!
+//! min y, 2(x₁ + … + xₙ) + y = n, n odd, all binary (Jeroslow 1974, Mathematical Programming 6).
+//! Every LP-based branch and bound makes 2·C(n+1, (n+1)/2) − 1 nodes, whatever the rules: a leaf
+//! is reached exactly when (n+1)/2 columns stand at the same value.
+
+use std::rc::Rc;
+
+use model::{ColumnId, Model, ModelBuilder, Sense};
+
+use super::support::{row, rules, run, spec};
+use crate::{NodeId, Status};
+
+fn instance(n: i64) -> Rc<Model> {
+    let mut builder = ModelBuilder::new("Jeroslow", Sense::Minimise);
+    let mut entries: Vec<(ColumnId, i64)> =
+        (0..n).map(|_| (builder.column(&[], &spec((0, 1), 0, true)).unwrap(), 2)).collect();
+    entries.push((builder.column(&[], &spec((0, 1), 1, true)).unwrap(), 1));
+    builder.row(&[], row(&entries, Some(n), Some(n))).unwrap();
+    Rc::new(builder.build())
+}
+
+#[test]
+fn the_tree_has_the_known_size() {
+    for (n, nodes) in [(3, 11), (5, 39), (7, 139), (9, 503)] {
+        for settings in rules() {
+            let (events, summary) = run(&instance(n), &settings, u64::MAX);
+            assert_eq!(summary.nodes, nodes, "n = {n}, {settings:?}");
+            assert_eq!(
+                (summary.status, summary.incumbent, summary.checked),
+                (Status::Optimal, Some(1.0), true)
+            );
+            let created =
+                events.iter().filter(|e| matches!(e, crate::Event::Created { .. })).count();
+            assert_eq!(created, nodes as usize);
+            assert!(events.iter().all(
+                |e| !matches!(e, crate::Event::Dropped { node, .. } if *node == NodeId::ROOT)
+            ));
+        }
+    }
+}

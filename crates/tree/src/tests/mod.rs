@@ -1,0 +1,9 @@
+//! Tests of the whole search against enumeration and known trees.
+
+mod endings;
+mod enumeration;
+mod inspection;
+mod jeroslow;
+mod slices;
+mod support;
+mod trips;

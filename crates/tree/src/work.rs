@@ -1,0 +1,246 @@
+//! The way of one node: its LP, rounds of separation until nothing is violated, then what its
+//! point gives.
+
+use lp::{Limits, Outcome, Progress as LpProgress, StopReason};
+
+use crate::event::NodeId;
+use crate::relaxation::Addition;
+use crate::search::{Ending, Hand, Job, Opening, PointInHand, Progress, Search, State};
+use crate::tour::TourSearch;
+
+/// Rounds of separation at the root at most: far more than convergence takes.
+const ROOT_ROUNDS: u32 = 10_000;
+
+/// Rounds of separation at any other node at most, while its point is fractional. A node
+/// stopped by it has a valid bound and is branched on; a point without fractions is always
+/// separated to the end.
+const NODE_ROUNDS: u32 = 100;
+
+impl Search {
+    /// One step of the job in hand, of about `ticks`.
+    pub(crate) fn step(&mut self, ticks: u64) -> Option<Progress> {
+        let ticks = ticks.max(1);
+        match &mut self.job {
+            Job::None => self.next_job(),
+            Job::Relax => {
+                let simplex = &mut self.relaxation.as_mut()?.simplex;
+                if simplex.advance(ticks) == LpProgress::Working {
+                    return None;
+                }
+                self.relaxed()
+            }
+            Job::Separate => {
+                if !self.rounds.advance(ticks, self.relaxation.as_ref()?) {
+                    return None;
+                }
+                self.separated()
+            }
+            Job::Complete(purpose) => {
+                let purpose = *purpose;
+                let point = self.checker.advance(ticks)?;
+                self.completed(purpose, point.as_deref())
+            }
+            Job::Tour(tour) => {
+                if tour.advance(ticks) {
+                    self.toured();
+                }
+                None
+            }
+        }
+    }
+
+    fn next_job(&mut self) -> Option<Progress> {
+        if self.state == State::Root {
+            return self.begin(NodeId::ROOT);
+        }
+        match self.opening {
+            Opening::Tour => {
+                self.opening = Opening::Rounding;
+                if let Some(trip) = &self.trip {
+                    self.job = Job::Tour(Box::new(TourSearch::new(trip, self.settings.seed)));
+                }
+                None
+            }
+            Opening::Rounding => {
+                self.opening = Opening::Branch;
+                let x = self.root.as_ref().map(|root| root.x.clone())?;
+                self.round(&x)
+            }
+            Opening::Branch => {
+                self.opening = Opening::Done;
+                self.open_root();
+                None
+            }
+            Opening::Done => self.next_node(),
+        }
+    }
+
+    fn next_node(&mut self) -> Option<Progress> {
+        if self.open.len() == 0 {
+            self.end(Ending::Complete);
+            return Some(Progress::Finished);
+        }
+        if self.quota == Some(0) {
+            self.paused = true;
+            return Some(Progress::Paused);
+        }
+        if self.settings.node_limit.is_some_and(|limit| self.ledger.nodes >= limit) {
+            self.end(Ending::Stopped("node limit".to_owned()));
+            return Some(Progress::Finished);
+        }
+        let tree = &self.tree;
+        let node = self.open.take(self.settings.selection, |node| tree.node(node).bound)?;
+        self.begin(node)
+    }
+
+    /// Takes a node in hand: its bounds, its parent's basis, its LP.
+    fn begin(&mut self, node: NodeId) -> Option<Progress> {
+        let Some(relaxation) = &mut self.relaxation else {
+            let trouble = self.ledger.trouble.clone();
+            return self.root_stopped(trouble);
+        };
+        let path = self.tree.path(node);
+        let parent = self.tree.node(node).parent();
+        relaxation.enter(&path);
+        relaxation.load(parent.and_then(|parent| self.tree.node(parent).basis.as_deref()));
+        self.hand = Some(Hand {
+            node,
+            iterations_before: relaxation.simplex.stats().iterations,
+            rows_added: 0,
+            rounds: 0,
+            accepted: None,
+            point: None,
+        });
+        self.solve()
+    }
+
+    /// Starts the LP in hand with the iterations that are left.
+    fn solve(&mut self) -> Option<Progress> {
+        let spent = self.work().iterations;
+        let left = self.settings.iteration_limit.map(|limit| limit.saturating_sub(spent));
+        if left == Some(0) {
+            return self.out_of_iterations();
+        }
+        self.relaxation.as_mut()?.simplex.start(Limits { iterations: left, cutoff: None });
+        self.job = Job::Relax;
+        None
+    }
+
+    /// The LP in hand has ended.
+    fn relaxed(&mut self) -> Option<Progress> {
+        let relaxation = self.relaxation.as_ref()?;
+        match relaxation.simplex.outcome()? {
+            Outcome::Optimal(solution) => {
+                let point = PointInHand {
+                    bound: relaxation.internal(solution.objective),
+                    x: solution.x.clone(),
+                    reduced_costs: solution.reduced_costs.clone(),
+                    duals: solution.duals.clone(),
+                };
+                self.pointed(point)
+            }
+            Outcome::Infeasible(ray) => {
+                let ray = ray.multipliers.clone();
+                self.infeasible(&ray)
+            }
+            Outcome::Unbounded { .. } => self.unbounded(),
+            Outcome::Stopped { reason: StopReason::Iterations, .. } => self.out_of_iterations(),
+            Outcome::Stopped { reason: StopReason::Numerical(why), .. } => {
+                let why = why.clone();
+                self.unsolved(&why)
+            }
+            Outcome::Stopped { reason: StopReason::Cutoff, .. } => {
+                self.unsolved("the kernel stopped early")
+            }
+        }
+    }
+
+    /// The LP in hand has a point: separate it, or go on when there is no need.
+    fn pointed(&mut self, point: PointInHand) -> Option<Progress> {
+        let fractional = self.chooser.fractional(&point.x);
+        let hand = self.hand.as_mut()?;
+        let root = hand.node == NodeId::ROOT;
+        let limit = if root { ROOT_ROUNDS } else { NODE_ROUNDS };
+        let enough = hand.rounds >= limit && fractional > 0;
+        let closed = !root && self.target.closes(point.bound);
+        let x = &hand.point.insert(point).x;
+        if self.rounds.is_empty() || closed || enough {
+            return self.converged();
+        }
+        self.rounds.start(x);
+        self.job = Job::Separate;
+        None
+    }
+
+    /// The round of separation has ended.
+    fn separated(&mut self) -> Option<Progress> {
+        let found = self.rounds.take();
+        if found.is_empty() {
+            return self.converged();
+        }
+        match self.add_rows(found) {
+            Ok(0) => self.converged(),
+            Ok(_) => self.solve(),
+            Err(why) => self.unsolved(&why),
+        }
+    }
+
+    /// Adds rows to the relaxation and counts those that are new as one round.
+    pub(crate) fn add_rows(&mut self, found: Vec<Addition>) -> Result<usize, String> {
+        let (Some(relaxation), Some(hand)) = (&mut self.relaxation, &mut self.hand) else {
+            return Ok(0);
+        };
+        let families = relaxation.add(found).map_err(|error| error.to_string())?;
+        if !families.is_empty() {
+            hand.rounds += 1;
+            hand.rows_added += u32::try_from(families.len()).unwrap_or(u32::MAX);
+        }
+        if hand.node == NodeId::ROOT {
+            families.iter().for_each(|family| self.root_added[family.index()] += 1);
+        }
+        Ok(families.len())
+    }
+
+    /// Adds rows and solves again; goes on to decide when they are not new.
+    pub(crate) fn tighten(&mut self, addition: Addition) -> Option<Progress> {
+        match self.add_rows(vec![addition]) {
+            Ok(0) => self.decide(),
+            Ok(_) => self.solve(),
+            Err(why) => self.unsolved(&why),
+        }
+    }
+
+    /// Nothing is violated any more (or the round limit is reached): look for solutions.
+    fn converged(&mut self) -> Option<Progress> {
+        let hand = self.hand.as_ref()?;
+        let root = hand.node == NodeId::ROOT;
+        let point = hand.point.as_ref()?;
+        let whole = self.chooser.fractional(&point.x) == 0;
+        if !root && self.target.closes(point.bound) {
+            return self.decide();
+        }
+        if whole {
+            return self.propose();
+        }
+        if root {
+            return self.decide();
+        }
+        let x = point.x.clone();
+        self.round(&x)
+    }
+
+    fn unbounded(&mut self) -> Option<Progress> {
+        if self.hand.as_ref()?.node == NodeId::ROOT {
+            return self.root_unbounded();
+        }
+        self.unsolved("its relaxation seems unbounded, though its parent's is bounded")
+    }
+
+    fn out_of_iterations(&mut self) -> Option<Progress> {
+        if self.hand.as_ref()?.node == NodeId::ROOT {
+            return self.root_stopped("iteration limit".to_owned());
+        }
+        self.end(Ending::Stopped("iteration limit".to_owned()));
+        Some(Progress::Finished)
+    }
+}

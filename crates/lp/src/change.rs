@@ -7,6 +7,7 @@ use crate::state::{Core, settled};
 impl Core {
     /// Appends rows; their logicals are basic.
     pub(crate) fn append_rows(&mut self, rows: &[CleanRow]) {
+        self.unscale();
         self.matrix.append(rows.iter().map(|row| row.entries.as_slice()));
         for row in rows {
             self.cost.push(0.0);
@@ -14,12 +15,14 @@ impl Core {
             self.upper.push(row.upper);
             self.status.push(Status::Basic);
         }
+        self.scale();
         self.restore_given();
         self.sort_head();
     }
 
     /// Keeps the rows marked true; the logicals of the others are basic.
     pub(crate) fn retain_rows(&mut self, keep: &[bool]) {
+        self.unscale();
         let n = self.columns();
         let kept = |j: usize| j < n || keep[j - n];
         let mut place = vec![0u32; self.variables()];
@@ -46,6 +49,8 @@ impl Core {
             kept(j - 1)
         });
         self.matrix.retain(keep);
+        self.unit.clear();
+        self.scale();
         self.restore_given();
         self.sort_head();
     }

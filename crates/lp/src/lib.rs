@@ -28,12 +28,14 @@
 
 mod basis;
 mod change;
+mod check;
 mod dual;
 mod lu;
 mod outcome;
 mod primal;
 mod problem;
 mod random;
+mod scale;
 mod simplex;
 mod sparse;
 mod state;

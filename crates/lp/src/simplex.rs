@@ -146,8 +146,9 @@ impl Simplex {
     pub fn set_bounds(&mut self, column: Col, lower: f64, upper: f64) {
         let at = column.0 as usize;
         if at < self.core.columns() {
-            self.core.lower[at] = if lower.is_nan() { f64::NEG_INFINITY } else { lower };
-            self.core.upper[at] = if upper.is_nan() { f64::INFINITY } else { upper };
+            let unit = self.core.unit[at];
+            self.core.lower[at] = if lower.is_nan() { f64::NEG_INFINITY } else { lower / unit };
+            self.core.upper[at] = if upper.is_nan() { f64::INFINITY } else { upper / unit };
             self.forget();
         }
     }
@@ -157,7 +158,8 @@ impl Simplex {
     pub fn bounds(&self, column: Col) -> (f64, f64) {
         let at = column.0 as usize;
         if at < self.core.columns() {
-            (self.core.lower[at], self.core.upper[at])
+            let unit = self.core.unit[at];
+            (self.core.lower[at] * unit, self.core.upper[at] * unit)
         } else {
             (f64::NEG_INFINITY, f64::INFINITY)
         }
@@ -167,7 +169,7 @@ impl Simplex {
     pub fn set_cost(&mut self, column: Col, cost: f64) {
         let at = column.0 as usize;
         if at < self.core.columns() && cost.is_finite() {
-            self.core.cost[at] = cost;
+            self.core.cost[at] = cost * self.core.unit[at];
             self.forget();
         }
     }
@@ -317,6 +319,7 @@ impl Simplex {
             return;
         }
         self.core.refactor_canonical();
+        debug_assert_eq!(self.core.check(), Ok(()));
         self.core.compute_basic();
         self.core.compute_reduced();
         let tolerance = self.core.room.dual;
@@ -378,7 +381,11 @@ impl Simplex {
         let duals = self.core.given_duals();
         let bound = self.core.dual_bound(&duals);
         if bound.is_some_and(|bound| bound > cutoff) {
-            self.finish(Outcome::Stopped { reason: StopReason::Cutoff, bound, duals });
+            self.finish(Outcome::Stopped {
+                reason: StopReason::Cutoff,
+                bound,
+                duals: self.core.released_duals(&duals),
+            });
             return true;
         }
         self.next_cutoff_check = self.core.iterations + 4 * CUTOFF_INTERVAL;
@@ -389,7 +396,7 @@ impl Simplex {
     fn stop(&mut self, reason: StopReason) {
         let duals = self.core.given_duals();
         let bound = self.core.dual_bound(&duals);
-        self.finish(Outcome::Stopped { reason, bound, duals });
+        self.finish(Outcome::Stopped { reason, bound, duals: self.core.released_duals(&duals) });
     }
 
     fn step_dual(&mut self) {

@@ -2,7 +2,7 @@
 //!
 //! min cᵀx, Ax − s = 0, bounds on x and s: row i has a logical s_i (variable n + i, column −e_i) whose bounds
 //! are the row's range. With y = B⁻ᵀc_B the reduced costs are d_j = c_j − a_jᵀy, and d of a logical is y_i.
-//! The methods may alter *working* costs and bounds (perturbation, shifts); the given ones stay.
+//! Everything is in scaled units (see `scale`). The methods may alter *working* costs and bounds (perturbation, shifts); the given ones stay.
 
 use crate::basis::Status;
 use crate::lu::{BasisColumns, Factor};
@@ -44,6 +44,9 @@ impl Default for Room {
 #[derive(Clone, Debug)]
 pub(crate) struct Core {
     pub(crate) matrix: Matrix,
+    /// The caller's value of a variable for a scaled value of 1.
+    pub(crate) unit: Vec<f64>,
+    pub(crate) is_scaled: bool,
     pub(crate) cost: Vec<f64>,
     pub(crate) lower: Vec<f64>,
     pub(crate) upper: Vec<f64>,
@@ -86,6 +89,8 @@ impl Core {
         upper.extend(problem.rows.iter().map(|row| row.upper));
         let mut core = Self {
             matrix,
+            unit: Vec::new(),
+            is_scaled: false,
             work_cost: cost.clone(),
             work_lower: lower.clone(),
             work_upper: upper.clone(),
@@ -109,6 +114,8 @@ impl Core {
             refactors: 0,
         };
         core.status.resize(n + m, Status::Basic);
+        core.scale();
+        core.restore_given();
         core.settle_statuses();
         core.sort_head();
         core

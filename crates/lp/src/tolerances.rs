@@ -29,13 +29,13 @@ pub(crate) fn ratio_entry(largest: f64) -> f64 {
 pub(crate) const PIVOT_AFTER_UPDATES: f64 = 1e-5;
 
 /// Smallest pivot taken with fresh factors; relative as above.
-pub(crate) const PIVOT_FRESH: f64 = 1e-8;
+pub(crate) const PIVOT_FRESH: f64 = 1e-11;
 
 /// Difference allowed between a pivot computed by row and by column while the factors carry updates; relative.
 pub(crate) const AGREEMENT_AFTER_UPDATES: f64 = 1e-6;
 
 /// The same with fresh factors; relative.
-pub(crate) const AGREEMENT_FRESH: f64 = 1e-3;
+pub(crate) const AGREEMENT_FRESH: f64 = 1e-5;
 
 /// Values produced by a solve below this are taken for cancelled; relative to the largest of them, and to 1 where that
 /// is larger.
@@ -50,7 +50,7 @@ pub(crate) fn solve_drop(largest: f64) -> f64 {
 pub(crate) const FACTOR_DROP: f64 = 1e-14;
 
 /// Pivots of the factorisation below this make the basis singular; absolute.
-pub(crate) const SINGULAR: f64 = 1e-10;
+pub(crate) const SINGULAR: f64 = 1e-12;
 
 /// Threshold pivoting: a pivot is at least this share of the largest entry of its row.
 pub(crate) const MARKOWITZ: f64 = 0.1;

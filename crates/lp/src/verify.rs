@@ -34,6 +34,23 @@ impl DualBound {
     }
 }
 
+/// Scales multipliers so that the largest is 1, or all are whole where a small factor does that.
+fn make_whole(multipliers: &mut [f64]) {
+    let largest = multipliers
+        .iter()
+        .fold(0.0, |largest: f64, y| if y.abs() > largest { y.abs() } else { largest });
+    if largest == 0.0 {
+        return;
+    }
+    multipliers.iter_mut().for_each(|y| *y /= largest);
+    let is_whole = |factor: f64| {
+        multipliers.iter().all(|y| (y * factor - (y * factor).round()).abs() <= VERIFY_RAY)
+    };
+    if let Some(factor) = (1..=WHOLE_FACTOR).map(f64::from).find(|&factor| is_whole(factor)) {
+        multipliers.iter_mut().for_each(|y| *y = (*y * factor).round());
+    }
+}
+
 impl Core {
     /// b(y), or none when a term is −∞ by more than `noise` times the size of its column.
     fn dual_value(&self, y: &[f64], with_costs: bool, noise: f64) -> Option<DualBound> {
@@ -65,50 +82,28 @@ impl Core {
         self.dual_value(y, true, VERIFY_DUAL).map(|bound| bound.value)
     }
 
-    /// The multipliers `sign` · `scratch.rho` as a ray, if they prove infeasibility.
+    /// The multipliers `sign` · `scratch.rho` as a ray in the caller's units, if they prove infeasibility.
     pub(crate) fn farkas_ray(&self, sign: f64) -> Option<Ray> {
+        let n = self.columns();
         let rho = &self.scratch.rho;
-        let largest =
-            rho.iter().fold(
-                0.0,
-                |largest, (_, value)| if value.abs() > largest { value.abs() } else { largest },
-            );
-        if largest == 0.0 {
-            return None;
-        }
+        let noise = VERIFY_RAY * rho.largest();
         let mut multipliers = vec![0.0; self.rows()];
         for (row, value) in rho.iter() {
-            multipliers[row as usize] = sign * value / largest;
-        }
-        self.tidy_ray(&mut multipliers);
-        self.proves_infeasible(&multipliers).then_some(Ray { multipliers })
-    }
-
-    /// Drops what is noise and what would need a side that is missing; makes the rest whole where a small factor does.
-    fn tidy_ray(&self, multipliers: &mut [f64]) {
-        let n = self.columns();
-        for (i, y) in multipliers.iter_mut().enumerate() {
-            let missing = if *y > 0.0 {
-                self.lower[n + i].is_infinite()
-            } else {
-                self.upper[n + i].is_infinite()
-            };
-            if y.abs() < VERIFY_RAY * 1e-3 || (missing && y.abs() < VERIFY_RAY) {
-                *y = 0.0;
+            let i = row as usize;
+            let y = sign * value;
+            let side = if y > 0.0 { self.lower[n + i] } else { self.upper[n + i] };
+            if y.abs() > if side.is_infinite() { noise } else { 1e-3 * noise } {
+                multipliers[i] = y / self.unit[n + i];
             }
         }
-        let is_whole = |factor: f64| {
-            multipliers.iter().all(|y| (y * factor - (y * factor).round()).abs() <= VERIFY_RAY)
-        };
-        if let Some(factor) = (1..=WHOLE_FACTOR).map(f64::from).find(|&factor| is_whole(factor)) {
-            for y in multipliers.iter_mut() {
-                *y = (*y * factor).round();
-            }
-        }
+        make_whole(&mut multipliers);
+        let scaled: Vec<f64> =
+            multipliers.iter().zip(&self.unit[n..]).map(|(y, unit)| y * unit).collect();
+        self.proves_infeasible(&scaled).then_some(Ray { multipliers })
     }
 
     /// True when the multipliers prove that there is no feasible point.
-    pub(crate) fn proves_infeasible(&self, multipliers: &[f64]) -> bool {
+    fn proves_infeasible(&self, multipliers: &[f64]) -> bool {
         self.dual_value(multipliers, false, VERIFY_RAY)
             .is_some_and(|bound| bound.value > VERIFY_FARKAS * bound.size)
     }
@@ -176,7 +171,33 @@ impl Core {
         if gap.is_nan() || gap.abs() > VERIFY_GAP * (1.0 + size + bound.size) {
             return Err("primal and dual objective differ".to_owned());
         }
-        Ok(Solution { objective, x, activity, duals, reduced_costs: self.reduced[..n].to_vec() })
+        Ok(self.in_given_units(Solution {
+            objective,
+            x,
+            activity,
+            duals,
+            reduced_costs: self.reduced[..n].to_vec(),
+        }))
+    }
+
+    /// A solution in the caller's units; the objective is the same in both.
+    fn in_given_units(&self, mut solution: Solution) -> Solution {
+        let (columns, rows) = self.unit.split_at(self.columns());
+        solution.x.iter_mut().zip(columns).for_each(|(value, unit)| *value *= unit);
+        solution.reduced_costs.iter_mut().zip(columns).for_each(|(value, unit)| *value /= unit);
+        solution.activity.iter_mut().zip(rows).for_each(|(value, unit)| *value *= unit);
+        solution.duals.iter_mut().zip(rows).for_each(|(value, unit)| *value /= unit);
+        solution
+    }
+
+    /// Multipliers in the caller's units.
+    pub(crate) fn released_duals(&self, duals: &[f64]) -> Vec<f64> {
+        duals.iter().zip(&self.unit[self.columns()..]).map(|(y, unit)| y / unit).collect()
+    }
+
+    /// Values of the columns in the caller's units.
+    fn released_point(&self, x: &[f64]) -> Vec<f64> {
+        x.iter().zip(&self.unit).map(|(x, unit)| x * unit).collect()
     }
 
     /// How the columns move while `entering` does, scaled so that the fastest moves by 1.
@@ -226,7 +247,7 @@ impl Core {
             .all(|(i, &(value, size))| recedes(value, 10.0 * size, n + i));
         let slope: f64 = ray.iter().zip(&self.cost).map(|(ray, cost)| ray * cost).sum();
         if columns && rows && slope < 0.0 {
-            Ok((point, ray))
+            Ok((self.released_point(&point), self.released_point(&ray)))
         } else {
             Err("the unbounded ray leaves the feasible set".to_owned())
         }

@@ -187,3 +187,6 @@ impl Core {
         self.reduced[entering as usize] = 0.0;
     }
 }
+
+#[cfg(test)]
+mod tests;

@@ -76,6 +76,20 @@ impl Matrix {
         *self = kept;
     }
 
+    /// Multiplies each entry by its column's factor and divides it by its row's.
+    pub(crate) fn scale(&mut self, columns: &[f64], rows: &[f64]) {
+        for (row, factor) in rows.iter().enumerate() {
+            for k in self.row_start[row]..self.row_start[row + 1] {
+                self.row_value[k] *= columns[self.row_index[k] as usize] / factor;
+            }
+        }
+        for (column, factor) in columns.iter().enumerate() {
+            for k in self.column_start[column]..self.column_start[column + 1] {
+                self.column_value[k] *= factor / rows[self.column_index[k] as usize];
+            }
+        }
+    }
+
     /// Makes the copy by column from the copy by row: a counting sort.
     fn rebuild_columns(&mut self) {
         let mut start = vec![0usize; self.columns + 1];

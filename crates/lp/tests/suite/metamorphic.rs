@@ -28,18 +28,17 @@ fn shuffled(shadow: &Shadow, random: &mut Random) -> Shadow {
 }
 
 /// Rows and columns scaled by powers of two.
-fn scaled(shadow: &Shadow, random: &mut Random) -> Shadow {
-    const POWERS: [f64; 5] = [0.125, 0.5, 1.0, 4.0, 16.0];
+fn scaled(shadow: &Shadow, random: &mut Random, powers: [f64; 5]) -> Shadow {
     let mut other = shadow.clone();
     let factors: Vec<f64> =
-        (0..shadow.cost.len()).map(|_| POWERS[random.integer(0, 4) as usize]).collect();
+        (0..shadow.cost.len()).map(|_| powers[random.integer(0, 4) as usize]).collect();
     for (j, factor) in factors.iter().enumerate() {
         other.cost[j] *= factor;
         other.lower[j] /= factor;
         other.upper[j] /= factor;
     }
     for row in &mut other.rows {
-        let row_factor = POWERS[random.integer(0, 4) as usize];
+        let row_factor = powers[random.integer(0, 4) as usize];
         row.0.iter_mut().for_each(|(j, value)| *value *= factors[*j] * row_factor);
         row.1 *= row_factor;
         row.2 *= row_factor;
@@ -80,12 +79,17 @@ fn other_words_same_value() {
             let shadow = generate(kind, 8000 + seed);
             let name = format!("{kind} {seed}");
             let original = verdict(&shadow, &name);
-            for (way, other) in [
+            let ways = [
                 ("shuffled", shuffled(&shadow, &mut random)),
-                ("scaled", scaled(&shadow, &mut random)),
+                ("scaled", scaled(&shadow, &mut random, [0.125, 0.5, 1.0, 4.0, 16.0])),
+                (
+                    "scaled widely",
+                    scaled(&shadow, &mut random, [1.0 / 8192.0, 1.0 / 64.0, 1.0, 128.0, 4096.0]),
+                ),
                 ("split", split(&shadow)),
                 ("mirrored", mirrored(&shadow)),
-            ] {
+            ];
+            for (way, other) in ways {
                 let found = verdict(&other, &format!("{name} {way}"));
                 assert!(
                     found.agrees(original, 1e-8),

@@ -1,0 +1,63 @@
+//! The invariants of the state, checked in debug builds at every evaluation.
+
+use crate::basis::Status;
+use crate::state::{Core, settled};
+
+impl Core {
+    /// Says which invariant is broken, if any: lengths, head against statuses, statuses against bounds, the two copies
+    /// of the matrix against each other. Work: the nonzeros.
+    pub(crate) fn check(&self) -> Result<(), String> {
+        let (variables, rows) = (self.variables(), self.rows());
+        let by_variable = [
+            &self.cost,
+            &self.lower,
+            &self.upper,
+            &self.work_cost,
+            &self.work_lower,
+            &self.work_upper,
+        ];
+        if variables != self.columns() + rows
+            || by_variable.iter().any(|list| list.len() != variables)
+        {
+            return Err(format!("{variables} variables, but an array of another length"));
+        }
+        let by_position = [&self.basic, &self.weight, &self.violation];
+        if self.head.len() != rows || by_position.iter().any(|list| list.len() != rows) {
+            return Err(format!(
+                "{rows} rows, but {} basic variables or an array of another length",
+                self.head.len()
+            ));
+        }
+        let basic = self.status.iter().filter(|status| **status == Status::Basic).count();
+        if basic != rows || self.head.iter().any(|&j| self.status[j as usize] != Status::Basic) {
+            return Err("head and statuses disagree".to_owned());
+        }
+        if self.canonical && !self.head.is_sorted() {
+            return Err("the canonical head is not sorted".to_owned());
+        }
+        let fits = |j: usize| {
+            self.status[j] == Status::Basic
+                || self.status[j] == settled(self.status[j], self.work_lower[j], self.work_upper[j])
+        };
+        if let Some(j) = (0..variables).find(|&j| !fits(j)) {
+            return Err(format!("variable {j} stands at a bound it does not have"));
+        }
+        self.check_matrix()
+    }
+
+    /// The copy by column holds the entries of the copy by row, in order.
+    fn check_matrix(&self) -> Result<(), String> {
+        let mut next: Vec<_> = (0..self.columns()).map(|j| self.matrix.column(j)).collect();
+        for i in 0..self.rows() {
+            for (j, value) in self.matrix.row(i) {
+                if next[j as usize].next() != Some((i as u32, value)) {
+                    return Err(format!("row {i} and column {j} of the matrix disagree"));
+                }
+            }
+        }
+        if next.iter_mut().any(|column| column.next().is_some()) {
+            return Err("a column of the matrix has an entry that no row has".to_owned());
+        }
+        Ok(())
+    }
+}

@@ -1,1 +1,60 @@
 //! Journal notation: text to checked formulation to model.
+//!
+//! | step | function | takes | gives |
+//! |---|---|---|---|
+//! | read | [`parse`] | a text | a tree with places, and what could not be read |
+//! | check | [`check`] | a tree | names and shapes resolved |
+//! | bind | [`bind`] | that and an instance | all data found, definitions evaluated |
+//! | expand | [`Expansion`] | that | a [`model::Model`], in slices |
+//! | print | [`print`] | a tree | Unicode text that reads back as the same tree |
+//!
+//! Nothing here fails on any text: what is wrong comes back as [`Diagnostic`]s with a place
+//! and, where one is known, a mend. [`model()`] does all of it at once, for small things.
+
+mod bind;
+mod check;
+mod diagnostic;
+mod evaluate;
+mod expand;
+mod lex;
+mod parse;
+mod place;
+mod plan;
+pub mod print;
+pub mod syntax;
+
+use std::collections::BTreeMap;
+
+pub use bind::{Bound, bind};
+pub use check::{Checked, check};
+pub use diagnostic::{Diagnostic, Edit, Mend, Severity};
+pub use expand::{Expansion, Limits, Progress, States};
+pub use parse::{NESTING_LIMIT, Parse, TEXT_LIMIT, parse};
+pub use place::{Span, line_column, utf16_offset, utf16_range};
+pub use print::print;
+
+/// Text and instance to a model with warnings, in one go. `names` maps names of the
+/// formulation to names of the instance where they differ; `states` sets families *in*,
+/// *on demand* or *out*.
+///
+/// # Errors
+/// Every error of the text; where the text is sound, every datum that lacks; where none does,
+/// every error of the expansion.
+pub fn model(
+    text: &str,
+    instance: &instance::Instance,
+    names: &BTreeMap<String, String>,
+    states: &States,
+) -> Result<(model::Model, Vec<Diagnostic>), Vec<Diagnostic>> {
+    let parsed = parse(text);
+    let (checked, mut found) = check(&parsed.tree);
+    found.extend(parsed.diagnostics);
+    let mut found = diagnostic::tidy(found);
+    if found.iter().any(Diagnostic::is_error) {
+        return Err(found);
+    }
+    let bound = bind(&checked, instance, names)?;
+    let (model, warnings) = Expansion::new(bound, states, Limits::default()).finish()?;
+    found.extend(warnings);
+    Ok((model, diagnostic::tidy(found)))
+}

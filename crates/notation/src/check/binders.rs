@@ -1,0 +1,401 @@
+//! Quantifiers to steps: a new name binds, a bound one makes a condition, left to right.
+
+use super::{Bound, Checker, Local};
+use crate::diagnostic::{names as message, shapes, subsets};
+use crate::place::Span;
+use crate::plan::{Node, Pattern, Root, Step, SubsetPlan};
+use crate::syntax::{Clause, Expression, Kind, Name, Relation};
+
+/// The work on one quantifier.
+pub(super) struct Quantifier<'e> {
+    pub(super) steps: Vec<Step>,
+    /// New names whose set is still to come.
+    pub(super) pending: Vec<(String, Span)>,
+    /// How many of them stand before the colon at hand and cannot share a set behind it.
+    fenced: usize,
+    /// Conditions that wait for a pending name.
+    deferred: Vec<Expression>,
+    pub(super) carriers: Vec<&'e Expression>,
+    subsets: bool,
+}
+
+impl Checker<'_> {
+    /// The steps of a quantifier. `carriers` are the expressions from whose indices a missing
+    /// set can be told; `subsets` says whether a subset may be quantified.
+    pub(super) fn quantify(
+        &mut self,
+        clauses: &[Clause],
+        carriers: &[&Expression],
+        subsets: bool,
+    ) -> Option<Vec<Step>> {
+        let mut work = Quantifier {
+            steps: Vec::new(),
+            pending: Vec::new(),
+            fenced: 0,
+            deferred: Vec::new(),
+            carriers: carriers.to_vec(),
+            subsets,
+        };
+        let mut sound = true;
+        for clause in clauses {
+            for item in &clause.items {
+                sound &= self.item(item, &mut work).is_some();
+            }
+            work.fenced = work.pending.len();
+            for item in &clause.such_that {
+                sound &= self.item(item, &mut work).is_some();
+            }
+        }
+        if !sound {
+            return None;
+        }
+        self.infer(&mut work)?;
+        for condition in std::mem::take(&mut work.deferred) {
+            self.condition_step(&condition, &mut work)?;
+        }
+        Some(work.steps)
+    }
+
+    fn item(&mut self, item: &Expression, work: &mut Quantifier<'_>) -> Option<()> {
+        match &item.kind {
+            Kind::Name(name) if self.is_new(name, work) => {
+                work.pending.push((name.text.clone(), item.span));
+                Some(())
+            }
+            Kind::All(items) => {
+                for item in items {
+                    self.item(item, work)?;
+                }
+                Some(())
+            }
+            Kind::Chain(first, links) => self.chain_item(item, first, links, work),
+            _ => self.condition_step(item, work),
+        }
+    }
+
+    /// A bare name that is not bound and not declared.
+    fn is_new(&self, name: &Name, work: &Quantifier<'_>) -> bool {
+        let bare = name.indices.is_empty() && name.superscript.is_none();
+        let waiting = work.pending.iter().any(|(n, _)| *n == name.text);
+        bare && (waiting || !self.is_known(&name.text))
+    }
+
+    fn new_name<'e>(&self, expression: &'e Expression, work: &Quantifier<'_>) -> Option<&'e Name> {
+        match &expression.kind {
+            Kind::Name(name) if self.is_new(name, work) => Some(name),
+            _ => None,
+        }
+    }
+
+    fn chain_item(
+        &mut self,
+        item: &Expression,
+        first: &Expression,
+        links: &[(Relation, Expression)],
+        work: &mut Quantifier<'_>,
+    ) -> Option<()> {
+        let mut operands: Vec<&Expression> = vec![first];
+        operands.extend(links.iter().map(|(_, operand)| operand));
+        let binds = |k: usize| match links[k].0 {
+            Relation::In => self.has_new(operands[k], work),
+            Relation::Subset | Relation::SubsetOrEqual => {
+                self.new_name(operands[k], work).is_some()
+            }
+            _ => false,
+        };
+        let binder = (0..links.len()).find(|&k| binds(k));
+        if let Some(k) = binder {
+            if links[k].0 == Relation::In {
+                self.membership_step(operands[k], operands[k + 1], work)?;
+            } else {
+                self.subset_step(operands[k], links[k].0, operands[k + 1], work)?;
+            }
+            for (i, (relation, _)) in links.iter().enumerate().filter(|(i, _)| *i != k) {
+                let kind = Kind::Chain(
+                    Box::new(operands[i].clone()),
+                    vec![(*relation, operands[i + 1].clone())],
+                );
+                let span = operands[i].span.to(operands[i + 1].span);
+                self.condition_step(&Expression { kind, span }, work)?;
+            }
+            return Some(());
+        }
+        let new: Vec<&Name> = operands.iter().filter_map(|o| self.new_name(o, work)).collect();
+        if new.is_empty() {
+            return self.condition_step(item, work);
+        }
+        if self.bounded_chain(&operands, links, work)? {
+            work.deferred.push(item.clone());
+            return Some(());
+        }
+        for name in new {
+            if !work.pending.iter().any(|(n, _)| *n == name.text) {
+                work.pending.push((name.text.clone(), item.span));
+            }
+        }
+        work.deferred.push(item.clone());
+        Some(())
+    }
+
+    /// Whether a pattern holds a new name.
+    fn has_new(&self, pattern: &Expression, work: &Quantifier<'_>) -> bool {
+        match &pattern.kind {
+            Kind::Tuple(items) => items.iter().any(|item| self.new_name(item, work).is_some()),
+            Kind::Name(_) => self.new_name(pattern, work).is_some(),
+            _ => false,
+        }
+    }
+
+    /// `1 ≤ i < j ≤ n`: the new names run over the whole numbers between the ends.
+    fn bounded_chain(
+        &mut self,
+        operands: &[&Expression],
+        links: &[(Relation, Expression)],
+        work: &mut Quantifier<'_>,
+    ) -> Option<bool> {
+        let rising = links.iter().all(|(r, _)| matches!(r, Relation::Less | Relation::AtMost));
+        let (Some(first), Some(last)) = (operands.first(), operands.last()) else {
+            return Some(false);
+        };
+        let inner = &operands[1..operands.len() - 1];
+        let closed = self.new_name(first, work).is_none() && self.new_name(last, work).is_none();
+        if !rising || !closed || inner.is_empty() {
+            return Some(false);
+        }
+        let from = self.data(first, "a range")?;
+        let to = self.data(last, "a range")?;
+        let span = first.span.to(last.span);
+        let set = Node::Range(Box::new(from), Box::new(to), span);
+        for operand in inner {
+            let Some(name) = self.new_name(operand, work) else { continue };
+            let text = name.text.clone();
+            work.pending.retain(|(n, _)| *n != text);
+            let slot = self.bind(&text, Root::Integer);
+            work.steps.push(Step::Over {
+                pattern: vec![Pattern::Bind(slot)],
+                set: set.clone(),
+                span,
+            });
+        }
+        Some(true)
+    }
+
+    fn membership_step(
+        &mut self,
+        left: &Expression,
+        right: &Expression,
+        work: &mut Quantifier<'_>,
+    ) -> Option<()> {
+        if let Kind::Name(name) = &left.kind {
+            self.shared_sets(name, right, work)?;
+        }
+        if let Kind::Call(word, _) = &right.kind
+            && self.graph_word(word).is_some()
+        {
+            return self.graph_step(left, right, work);
+        }
+        let subset_uses = self.subset_uses;
+        let (set, roots) = self.set(right)?;
+        if roots.is_empty() {
+            let wanted = "a set to draw from";
+            return self.report(shapes::expected(wanted, "∅", right.span));
+        }
+        let items = self.pattern_items(left, roots.len(), work);
+        if items.len() != roots.len() {
+            return self.report(shapes::tuple_size(roots.len(), items.len(), left.span));
+        }
+        let pattern = self.pattern(&items, &roots, work)?;
+        self.push_over(pattern, set, left.span.to(right.span), subset_uses, work);
+        Some(())
+    }
+
+    /// `i, j ∈ V`: the names that stand before `j` in the same list take the same set.
+    fn shared_sets(
+        &mut self,
+        name: &Name,
+        right: &Expression,
+        work: &mut Quantifier<'_>,
+    ) -> Option<()> {
+        let waiting: Vec<(String, Span)> =
+            work.pending.drain(work.fenced.min(work.pending.len())..).collect();
+        for (other, span) in waiting {
+            if other == name.text {
+                continue;
+            }
+            let subset_uses = self.subset_uses;
+            let (set, roots) = self.set(right)?;
+            let [root] = roots[..] else {
+                return self.report(shapes::tuple_size(roots.len(), 1, span));
+            };
+            let slot = self.bind(&other, root);
+            self.push_over(vec![Pattern::Bind(slot)], set, span, subset_uses, work);
+        }
+        Some(())
+    }
+
+    /// Adds a step; one over the quantified subset itself runs over its ground set, with the
+    /// membership as a condition on the subset.
+    fn push_over(
+        &mut self,
+        pattern: Vec<Pattern>,
+        set: Node,
+        span: Span,
+        subset_uses: usize,
+        work: &mut Quantifier<'_>,
+    ) {
+        let over_subset = work.subsets && self.subset_uses > subset_uses;
+        if !over_subset {
+            work.steps.push(Step::Over { pattern, set, span });
+            return;
+        }
+        let Some(subset) = &mut self.subset else { return };
+        let members = pattern.iter().map(|p| match p {
+            Pattern::Bind(slot) | Pattern::Same(slot) => Node::Slot(*slot),
+            Pattern::Match(node) => node.clone(),
+        });
+        subset.conditions.push((Node::Member(true, members.collect(), Box::new(set)), span));
+        let ground = subset.ground.clone();
+        work.steps.push(Step::Over { pattern, set: ground, span });
+    }
+
+    /// The places of a pattern; letters of one word are split to fit.
+    fn pattern_items(
+        &self,
+        left: &Expression,
+        wanted: usize,
+        work: &Quantifier<'_>,
+    ) -> Vec<Expression> {
+        match &left.kind {
+            Kind::Tuple(items) => items.clone(),
+            Kind::Name(name)
+                if wanted > 1 && self.is_new(name, work) && name.text.chars().count() == wanted =>
+            {
+                let letter = |c: char| Expression {
+                    kind: Kind::Name(Name {
+                        text: c.to_string(),
+                        indices: Vec::new(),
+                        superscript: None,
+                    }),
+                    span: left.span,
+                };
+                name.text.chars().map(letter).collect()
+            }
+            _ => vec![left.clone()],
+        }
+    }
+
+    fn pattern(
+        &mut self,
+        items: &[Expression],
+        roots: &[Root],
+        work: &mut Quantifier<'_>,
+    ) -> Option<Vec<Pattern>> {
+        let mut pattern = Vec::with_capacity(items.len());
+        let mut bound: Vec<(String, usize)> = Vec::new();
+        // what is known is matched before the new names are bound
+        for (item, &root) in items.iter().zip(roots) {
+            if let Kind::Name(name) = &item.kind {
+                if let Some((_, slot)) = bound.iter().find(|(n, _)| *n == name.text) {
+                    pattern.push(Pattern::Same(*slot));
+                    continue;
+                }
+                if self.is_new(name, work) {
+                    work.pending.retain(|(n, _)| *n != name.text);
+                    work.fenced = work.fenced.min(work.pending.len());
+                    let slot = self.bind(&name.text, root);
+                    bound.push((name.text.clone(), slot));
+                    pattern.push(Pattern::Bind(slot));
+                    continue;
+                }
+                if matches!(self.names.get(&name.text), Some(super::Global::Variable(_))) {
+                    return self.report(message::taken(&name.text, item.span, "variable"));
+                }
+            }
+            pattern.push(Pattern::Match(self.index(item)?.0));
+        }
+        Some(pattern)
+    }
+
+    fn graph_step(
+        &mut self,
+        left: &Expression,
+        right: &Expression,
+        work: &mut Quantifier<'_>,
+    ) -> Option<()> {
+        let before = self.locals.len();
+        let (steps, slots, _) = self.walk_set(right)?;
+        let items = self.pattern_items(left, slots.len(), work);
+        if items.len() != slots.len() {
+            return self.report(shapes::tuple_size(slots.len(), items.len(), left.span));
+        }
+        work.steps.extend(steps);
+        let mut at = before;
+        for (item, slot) in items.iter().zip(slots) {
+            match self.new_name(item, work).map(|n| n.text.clone()) {
+                Some(text) => {
+                    work.pending.retain(|(n, _)| *n != text);
+                    self.locals[at].name = text;
+                }
+                None => {
+                    let node = self.index(item)?.0;
+                    let same = Node::Same(true, Box::new(Node::Slot(slot)), Box::new(node));
+                    work.steps.push(Step::When(same, item.span));
+                }
+            }
+            at += 1;
+        }
+        Some(())
+    }
+
+    fn subset_step(
+        &mut self,
+        left: &Expression,
+        relation: Relation,
+        right: &Expression,
+        work: &mut Quantifier<'_>,
+    ) -> Option<()> {
+        let name = self.new_name(left, work)?.text.clone();
+        let span = left.span.to(right.span);
+        if !work.subsets {
+            return self.report(subsets::misplaced(span));
+        }
+        if self.subset.is_some() {
+            return self.report(subsets::two(span));
+        }
+        let (ground, roots) = self.set(right)?;
+        let [root] = roots[..] else { return self.report(subsets::ground(right.span)) };
+        work.pending.retain(|(n, _)| *n != name);
+        let proper = relation == Relation::Subset;
+        self.locals.push(Local { name: name.clone(), what: Bound::Subset(root) });
+        self.subset = Some(SubsetPlan { name, ground, proper, conditions: Vec::new(), span });
+        Some(())
+    }
+
+    pub(super) fn condition_step(
+        &mut self,
+        condition: &Expression,
+        work: &mut Quantifier<'_>,
+    ) -> Option<()> {
+        if !work.pending.is_empty() && self.mentions_pending(condition, work) {
+            work.deferred.push(condition.clone());
+            return Some(());
+        }
+        let subset_uses = self.subset_uses;
+        let node = self.truth(condition)?;
+        if work.subsets && self.subset_uses > subset_uses {
+            if let Some(subset) = &mut self.subset {
+                subset.conditions.push((node, condition.span));
+            }
+        } else {
+            work.steps.push(Step::When(node, condition.span));
+        }
+        Some(())
+    }
+
+    fn mentions_pending(&self, expression: &Expression, work: &Quantifier<'_>) -> bool {
+        let own = matches!(&expression.kind, Kind::Name(name) if work.pending.iter().any(|(n, _)| *n == name.text));
+        own || super::usage::children(expression)
+            .into_iter()
+            .any(|child| self.mentions_pending(child, work))
+    }
+}

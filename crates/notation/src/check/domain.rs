@@ -1,0 +1,359 @@
+//! Domain lines: which lines declare variables, and the bounds they give.
+
+use std::collections::BTreeSet;
+
+use super::{Checker, Global, usage};
+use crate::diagnostic::{rows as message, shapes};
+use crate::plan::{Bounding, Domain, Node, Root, Variable};
+use crate::syntax::{Expression, Kind, Line, Name, Relation};
+
+/// Which part of a line is a domain.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(super) enum Role {
+    /// All of it: a list of variables with constants.
+    Domain,
+    /// The links of these numbers; the others are rows.
+    Links(Vec<usize>),
+    /// None of it.
+    Row,
+}
+
+impl<'t> Checker<'t> {
+    /// The role of each statement; the variables that they declare become known.
+    pub(super) fn find_domains(&mut self) -> Vec<Role> {
+        let tree = self.tree;
+        let roles: Vec<Role> = tree.statements.iter().map(|line| self.role(line)).collect();
+        for (line, role) in tree.statements.iter().zip(&roles) {
+            for operand in declared(line, role) {
+                self.new_variable(operand);
+            }
+        }
+        roles
+    }
+
+    fn new_variable(&mut self, operand: &Expression) {
+        let Kind::Name(name) = &operand.kind else { return };
+        if self.names.contains_key(&name.text) {
+            return;
+        }
+        self.names.insert(name.text.clone(), Global::Variable(self.variables.len()));
+        self.variables.push(Variable {
+            name: name.text.clone(),
+            span: operand.span,
+            roots: Vec::new(),
+            tuples: None,
+            domains: Vec::new(),
+            used: false,
+        });
+    }
+
+    fn role(&self, line: &Line) -> Role {
+        let mut bound = BTreeSet::new();
+        for clause in &line.clauses {
+            usage::of_clause(clause).for_each(|item| bare_names(item, &mut bound));
+        }
+        let candidate = |e: &Expression| self.is_candidate(e, &bound);
+        let constant = |e: &Expression| self.is_constant(e, &bound);
+        let operands = operands(line);
+        let names = line.left.iter().all(candidate);
+        let list = names && line.links.iter().all(|(_, e)| constant(e));
+        let single = line.left.len() == 1
+            && operands.iter().filter(|e| candidate(e)).count() == 1
+            && operands.iter().all(|e| candidate(e) || constant(e));
+        if list || single {
+            return if line.label.is_some() { Role::Row } else { Role::Domain };
+        }
+        if line.left.len() > 1 || line.links.len() < 2 {
+            return Role::Row;
+        }
+        let bounds = |k: usize| {
+            let (a, b) = (operands[k], operands[k + 1]);
+            candidate(a) && constant(b) || constant(a) && candidate(b)
+        };
+        let links: Vec<usize> = (0..line.links.len()).filter(|&k| bounds(k)).collect();
+        if links.is_empty() { Role::Row } else { Role::Links(links) }
+    }
+
+    /// A single name that is not declared and not bound.
+    fn is_candidate(&self, expression: &Expression, bound: &BTreeSet<&str>) -> bool {
+        match &expression.kind {
+            Kind::Name(name) => {
+                let known = matches!(self.names.get(&name.text), Some(Global::Symbol(_)));
+                !known
+                    && !bound.contains(name.text.as_str())
+                    && !self.splits_into_known(&name.text, bound)
+            }
+            _ => false,
+        }
+    }
+
+    fn splits_into_known(&self, word: &str, bound: &BTreeSet<&str>) -> bool {
+        let known = |name: &str| {
+            bound.contains(name) || matches!(self.names.get(name), Some(Global::Symbol(_)))
+        };
+        !super::names::splits(word, &known).is_empty()
+    }
+
+    /// Whether an expression mentions only data, definitions and bound names.
+    fn is_constant(&self, expression: &Expression, bound: &BTreeSet<&str>) -> bool {
+        match &expression.kind {
+            Kind::Big(_, clause, body) => {
+                let mut inner = bound.clone();
+                usage::of_clause(clause).for_each(|item| bare_names(item, &mut inner));
+                usage::of_clause(clause).chain([body.as_ref()]).all(|e| self.is_constant(e, &inner))
+            }
+            Kind::Name(name) | Kind::Call(name, _) => {
+                let known = bound.contains(name.text.as_str())
+                    || matches!(self.names.get(&name.text), Some(Global::Symbol(_)))
+                    || self.splits_into_known(&name.text, bound);
+                known
+            }
+            _ => {
+                usage::children(expression).into_iter().all(|child| self.is_constant(child, bound))
+            }
+        }
+    }
+
+    /// Reads the domain lines.
+    pub(super) fn domains(&mut self, roles: &[Role]) {
+        let tree = self.tree;
+        for (line, role) in tree.statements.iter().zip(roles) {
+            match role {
+                Role::Row => {}
+                Role::Domain => {
+                    let bounds = if line.left.len() == 1 {
+                        single_bounds(line)
+                    } else {
+                        listed_bounds(line)
+                    };
+                    for (name, bounds) in bounds {
+                        self.domain(line, name, &bounds);
+                    }
+                }
+                Role::Links(links) => {
+                    let operands = operands(line);
+                    for &k in links {
+                        let (left, right, relation) =
+                            (operands[k], operands[k + 1], line.links[k].0);
+                        let bound = match self.variable_of(left) {
+                            true => (left, vec![(relation, right)]),
+                            false => (right, vec![(turned(relation), left)]),
+                        };
+                        self.domain(line, bound.0, &bound.1);
+                    }
+                }
+            }
+        }
+    }
+
+    fn variable_of(&self, expression: &Expression) -> bool {
+        match &expression.kind {
+            Kind::Name(name) => matches!(self.names.get(&name.text), Some(Global::Variable(_))),
+            _ => false,
+        }
+    }
+
+    fn domain(
+        &mut self,
+        line: &'t Line,
+        operand: &Expression,
+        bounds: &[(Relation, &Expression)],
+    ) -> Option<()> {
+        let Kind::Name(name) = &operand.kind else { return None };
+        let Some(Global::Variable(number)) = self.names.get(&name.text).copied() else {
+            return None;
+        };
+        self.fresh_line();
+        let mut carriers: Vec<&Expression> = bounds.iter().map(|(_, e)| *e).collect();
+        carriers.push(operand);
+        let steps = self.quantify(&line.clauses, &carriers, false)?;
+        let (indices, roots) = self.own_indices(name)?;
+        let first = self.variables[number].domains.is_empty();
+        if !first && self.variables[number].roots.len() != roots.len() {
+            let wanted = self.variables[number].roots.len();
+            return self.report(shapes::indices(&name.text, wanted, roots.len(), operand.span));
+        }
+        let variable = &mut self.variables[number];
+        if first {
+            variable.tuples = super::declare::whole_set(&steps, &indices);
+            variable.roots = roots;
+        } else {
+            for (known, found) in variable.roots.iter_mut().zip(roots) {
+                // x_{r} = 0 adds nothing to what is known of the index set
+                if *known != found && matches!(found, Root::Set(_)) {
+                    *known = Root::Unknown;
+                }
+            }
+        }
+        let mut found = Vec::new();
+        for (relation, operand) in bounds {
+            found.extend(self.bounding(*relation, operand)?);
+        }
+        self.variables[number].domains.push(Domain {
+            steps,
+            indices,
+            bounds: found,
+            span: line.span,
+        });
+        Some(())
+    }
+
+    fn own_indices(&mut self, name: &Name) -> Option<(Vec<Node>, Vec<Root>)> {
+        let mut written = self.spread(&name.indices, usize::MAX);
+        if let Some(raised) = &name.superscript {
+            written.push(raised.as_ref().clone());
+        }
+        let read: Vec<Option<(Node, Root)>> =
+            written.iter().map(|index| self.index(index)).collect();
+        let read: Vec<(Node, Root)> = read.into_iter().collect::<Option<_>>()?;
+        Some(read.into_iter().unzip())
+    }
+
+    fn bounding(&mut self, relation: Relation, operand: &Expression) -> Option<Vec<Bounding>> {
+        if let Kind::Infinity = operand.kind {
+            let upper = matches!(relation, Relation::AtMost | Relation::Less);
+            return if upper {
+                Some(Vec::new())
+            } else {
+                self.report(message::objective_infinite(operand.span))
+            };
+        }
+        if let (Kind::Negative(inner), Relation::AtLeast) = (&operand.kind, relation)
+            && inner.kind == Kind::Infinity
+        {
+            return Some(vec![Bounding::Numbers(crate::syntax::NumberSet::Real)]);
+        }
+        match relation {
+            Relation::In => self.values(operand),
+            Relation::AtMost => Some(vec![Bounding::Upper(self.data(operand, "a bound")?)]),
+            Relation::AtLeast => Some(vec![Bounding::Lower(self.data(operand, "a bound")?)]),
+            Relation::Equal => Some(vec![Bounding::Fixed(self.data(operand, "a bound")?)]),
+            Relation::Less | Relation::Greater | Relation::NotEqual => {
+                self.report(message::strict(operand.span))
+            }
+            _ => self.report(message::domain(operand.span)),
+        }
+    }
+
+    /// `∈ {0,1}`, `∈ ℤ_+`, `∈ [a,b]`, `∈ {0..k}`.
+    fn values(&mut self, operand: &Expression) -> Option<Vec<Bounding>> {
+        match &operand.kind {
+            Kind::NumberSet(set) => Some(vec![Bounding::Numbers(*set)]),
+            Kind::Interval(from, to) => {
+                let mut bounds = Vec::new();
+                if !matches!(&from.kind, Kind::Negative(inner) if inner.kind == Kind::Infinity) {
+                    bounds.push(Bounding::Lower(self.data(from, "a bound")?));
+                } else {
+                    bounds.push(Bounding::Numbers(crate::syntax::NumberSet::Real));
+                }
+                if to.kind != Kind::Infinity {
+                    bounds.push(Bounding::Upper(self.data(to, "a bound")?));
+                }
+                Some(bounds)
+            }
+            Kind::Range(from, to) => {
+                let (from, to) = (self.data(from, "a bound")?, self.data(to, "a bound")?);
+                Some(vec![Bounding::Whole(from, to)])
+            }
+            Kind::Set(items) => {
+                let numbers: Option<Vec<&model::Number>> = items
+                    .iter()
+                    .map(
+                        |item| {
+                            if let Kind::Number(value) = &item.kind { Some(value) } else { None }
+                        },
+                    )
+                    .collect();
+                let Some(mut numbers) = numbers else {
+                    return self.report(message::domain(operand.span));
+                };
+                numbers.sort();
+                let consecutive = numbers.windows(2).all(|w| w[0] + model::Number::ONE == *w[1]);
+                let whole = numbers.iter().all(|n| n.is_int());
+                match (numbers.first(), numbers.last(), consecutive && whole) {
+                    (Some(&from), Some(&to), true) => Some(vec![Bounding::Whole(
+                        Node::Number(from.clone()),
+                        Node::Number(to.clone()),
+                    )]),
+                    _ => self.report(message::not_consecutive(operand.span)),
+                }
+            }
+            _ => self.report(message::domain(operand.span)),
+        }
+    }
+}
+
+/// All operands of a chain in order.
+pub(super) fn operands(line: &Line) -> Vec<&Expression> {
+    line.left.iter().chain(line.links.iter().map(|(_, operand)| operand)).collect()
+}
+
+/// The operands of a line that declare a variable.
+fn declared<'t>(line: &'t Line, role: &Role) -> Vec<&'t Expression> {
+    let all = operands(line);
+    let is_name = |e: &&Expression| matches!(e.kind, Kind::Name(_));
+    match role {
+        Role::Row => Vec::new(),
+        Role::Domain
+            if line.left.len() > 1
+                || is_name(&all[0]) && line.links.iter().all(|(_, e)| !is_name(&e)) =>
+        {
+            line.left.iter().collect()
+        }
+        Role::Domain => all.into_iter().filter(is_name).collect(),
+        Role::Links(links) => {
+            links.iter().flat_map(|&k| [all[k], all[k + 1]]).filter(is_name).collect()
+        }
+    }
+}
+
+type Bounds<'t> = Vec<(&'t Expression, Vec<(Relation, &'t Expression)>)>;
+
+/// `a ≤ x ≤ b`: the name is the one operand that is no symbol.
+fn single_bounds(line: &Line) -> Bounds<'_> {
+    let all = operands(line);
+    let mut found = Vec::new();
+    for (k, operand) in all.iter().enumerate() {
+        if !matches!(operand.kind, Kind::Name(_)) {
+            continue;
+        }
+        let mut bounds = Vec::new();
+        if k > 0 {
+            bounds.push((turned(line.links[k - 1].0), all[k - 1]));
+        }
+        if let Some((relation, right)) = line.links.get(k) {
+            bounds.push((*relation, right));
+        }
+        found.push((*operand, bounds));
+    }
+    found
+}
+
+/// `x, y ≥ 0`: every name on the left has every bound.
+fn listed_bounds(line: &Line) -> Bounds<'_> {
+    let bounds: Vec<_> =
+        line.links.iter().map(|(relation, operand)| (*relation, operand)).collect();
+    line.left.iter().map(|name| (name, bounds.clone())).collect()
+}
+
+fn turned(relation: Relation) -> Relation {
+    match relation {
+        Relation::Less => Relation::Greater,
+        Relation::AtMost => Relation::AtLeast,
+        Relation::Greater => Relation::Less,
+        Relation::AtLeast => Relation::AtMost,
+        other => other,
+    }
+}
+
+/// Every bare name in a quantifier: those it binds, and more.
+fn bare_names<'e>(expression: &'e Expression, names: &mut BTreeSet<&'e str>) {
+    if let Kind::Name(name) = &expression.kind
+        && name.indices.is_empty()
+    {
+        names.insert(&name.text);
+    }
+    for child in usage::children(expression) {
+        bare_names(child, names);
+    }
+}

@@ -1,0 +1,153 @@
+//! Conditions. What depends on the quantified subset gives a guard instead of yes or no.
+
+use std::cmp::Ordering;
+
+use super::{Environment, Evaluated, Evaluator, Guard, fail};
+use crate::diagnostic::{shapes, subsets};
+use crate::place::Span;
+use crate::plan::Node;
+use crate::syntax::Relation;
+
+impl Evaluator {
+    pub(crate) fn truth(&self, node: &Node, env: &mut Environment) -> Evaluated<Guard> {
+        match node {
+            Node::Compare(relation, a, b) => {
+                let (a, b) = (self.number(a, env)?, self.number(b, env)?);
+                Ok(Guard::known(stands(*relation, a.cmp(&b))))
+            }
+            Node::Same(equal, a, b) => {
+                Ok(Guard::known((self.element(a, env)? == self.element(b, env)?) == *equal))
+            }
+            Node::Ordered(relation, a, b, root, span) => {
+                let (a, b) = (self.element(a, env)?, self.element(b, env)?);
+                let pool = self.pool.borrow();
+                if let (Some(a), Some(b)) = (pool.whole(a), pool.whole(b)) {
+                    return Ok(Guard::known(stands(*relation, a.cmp(&b))));
+                }
+                let Some(super::Values::Single(super::Value::Set(set))) = &self.values[*root]
+                else {
+                    return fail(shapes::not_comparable(*span));
+                };
+                match (set.position(&[a]), set.position(&[b])) {
+                    (Some(a), Some(b)) => Ok(Guard::known(stands(*relation, a.cmp(&b)))),
+                    _ => fail(shapes::not_comparable(*span)),
+                }
+            }
+            Node::Member(inside, tuple, set) => self.member(*inside, tuple, set, env),
+            Node::Sets(relation, a, b) => self.compare_sets(*relation, a, b, env),
+            Node::All(items) => {
+                let mut all = Guard::ALWAYS;
+                for item in items {
+                    all = self.both(all, item, env)?;
+                    if all.value() == Some(false) {
+                        break;
+                    }
+                }
+                Ok(all)
+            }
+            Node::Any(items) => {
+                let mut any = Guard::known(false);
+                for item in items {
+                    let next = self.truth(item, env)?;
+                    any = any
+                        .or(next)
+                        .map_or_else(|| fail(subsets::nonlinear(Span::default())), Ok)?;
+                    if any.value() == Some(true) {
+                        break;
+                    }
+                }
+                Ok(any)
+            }
+            Node::Not(inner) => Ok(self.truth(inner, env)?.not()),
+            Node::Parity(odd, inner, span) => self.parity(*odd, inner, *span, env),
+            Node::Clique(set, edges) => self.clique(set, edges, env),
+            _ => fail(shapes::expected("a condition", "another value", Span::default())),
+        }
+    }
+
+    pub(super) fn both(
+        &self,
+        guard: Guard,
+        node: &Node,
+        env: &mut Environment,
+    ) -> Evaluated<Guard> {
+        let next = self.truth(node, env)?;
+        guard.and(next).map_or_else(|| fail(subsets::nonlinear(Span::default())), Ok)
+    }
+
+    fn member(
+        &self,
+        inside: bool,
+        tuple: &[Node],
+        set: &Node,
+        env: &mut Environment,
+    ) -> Evaluated<Guard> {
+        let key = self.tuple(tuple, env)?;
+        if matches!(set, Node::Subset) {
+            return Ok(Guard::member(key[0], inside));
+        }
+        if self.depends_on_subset(set) {
+            return fail(subsets::nonlinear(Span::default()));
+        }
+        Ok(Guard::known(self.set(set, env)?.contains(&key) == inside))
+    }
+
+    fn compare_sets(
+        &self,
+        relation: Relation,
+        a: &Node,
+        b: &Node,
+        env: &mut Environment,
+    ) -> Evaluated<Guard> {
+        if self.depends_on_subset(a) || self.depends_on_subset(b) {
+            return fail(subsets::nonlinear(Span::default()));
+        }
+        let (a, b) = (self.set(a, env)?, self.set(b, env)?);
+        let contained = a.iter().all(|tuple| b.contains(tuple));
+        let equal = contained && a.len() == b.len();
+        Ok(Guard::known(match relation {
+            Relation::Equal => equal,
+            Relation::NotEqual => !equal,
+            Relation::Subset => contained && !equal,
+            _ => contained,
+        }))
+    }
+
+    fn parity(
+        &self,
+        odd: bool,
+        inner: &Node,
+        span: Span,
+        env: &mut Environment,
+    ) -> Evaluated<Guard> {
+        let value = self.number(inner, env)?;
+        if !value.is_int() {
+            return fail(shapes::whole(span));
+        }
+        let is_odd = value.numerator() % 2_u8 != 0_u8;
+        Ok(Guard::known(is_odd == odd))
+    }
+
+    fn clique(&self, set: &Node, edges: &Node, env: &mut Environment) -> Evaluated<Guard> {
+        if self.depends_on_subset(set) {
+            return fail(subsets::nonlinear(Span::default()));
+        }
+        let (set, edges) = (self.set(set, env)?, self.set(edges, env)?);
+        let joined = |a, b| a == b || edges.contains(&[a, b]) || edges.contains(&[b, a]);
+        let all = set.iter().all(|a| set.iter().all(|b| joined(a[0], b[0])));
+        Ok(Guard::known(all))
+    }
+}
+
+/// Whether two things in this order stand in the relation.
+fn stands(relation: Relation, order: Ordering) -> bool {
+    match relation {
+        Relation::Equal => order == Ordering::Equal,
+        Relation::NotEqual => order != Ordering::Equal,
+        Relation::Less => order == Ordering::Less,
+        Relation::AtMost => order != Ordering::Greater,
+        Relation::Greater => order == Ordering::Greater,
+        Relation::AtLeast => order != Ordering::Less,
+        _ => false,
+    }
+}

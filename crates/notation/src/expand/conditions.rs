@@ -1,0 +1,391 @@
+//! Conditions on the subset of a family: sizes, members, parity, weights, cliques.
+
+use dashu_int::{IBig, UBig};
+use model::{LabelId, Number, SubsetCondition};
+
+use super::Expansion;
+use super::subsets::weights;
+use crate::diagnostic::subsets as message;
+use crate::evaluate::{Element, Evaluated, Guard, Linear, Set, fail};
+use crate::place::Span;
+use crate::plan::{Node, SubsetPlan};
+use crate::syntax::Relation;
+
+/// What is gathered of one quantifier.
+struct Gathered {
+    at_least: u32,
+    at_most: u32,
+    others: Vec<SubsetCondition>,
+    /// A condition that no subset meets.
+    impossible: bool,
+}
+
+impl Expansion {
+    /// The conditions on the subset; `None` when none can meet them.
+    pub(super) fn conditions(
+        &mut self,
+        subset: &SubsetPlan,
+        ground: &Set,
+    ) -> Evaluated<Option<Vec<SubsetCondition>>> {
+        let all = u32::try_from(ground.len()).unwrap_or(u32::MAX);
+        let mut gathered = Gathered {
+            at_least: 0,
+            at_most: if subset.proper { all.saturating_sub(1) } else { all },
+            others: Vec::new(),
+            impossible: subset.proper && all == 0,
+        };
+        for (node, span) in &subset.conditions {
+            let read = self.condition(node, *span, ground, &mut gathered);
+            read.map_err(|d| crate::evaluate::placed(d, *span))?;
+        }
+        if gathered.impossible || gathered.at_least > gathered.at_most {
+            return Ok(None);
+        }
+        let mut conditions = gathered.others;
+        if gathered.at_least > 0 || gathered.at_most < all {
+            let (at_least, at_most) = (gathered.at_least, gathered.at_most);
+            conditions.insert(0, SubsetCondition::Size { at_least, at_most });
+        }
+        Ok(Some(conditions))
+    }
+
+    fn condition(
+        &mut self,
+        node: &Node,
+        span: Span,
+        ground: &Set,
+        into: &mut Gathered,
+    ) -> Evaluated<()> {
+        match node {
+            Node::All(items) => {
+                for item in items {
+                    self.condition(item, span, ground, into)?;
+                }
+                Ok(())
+            }
+            Node::Not(inner) => self.negated(inner, span, ground, into),
+            Node::Compare(relation, a, b) => match (a.as_ref(), b.as_ref()) {
+                (Node::Modulo(inner, two, _), rest) | (rest, Node::Modulo(inner, two, _)) => {
+                    self.remainder(*relation, inner, two, rest, span, into)
+                }
+                _ => self.comparison(*relation, a, b, span, ground, into),
+            },
+            Node::Parity(odd, inner, _) => self.parity(*odd, inner, span, into),
+            Node::Member(inside, tuple, set) if matches!(**set, Node::Subset) => {
+                let element = self.evaluator.tuple(tuple, &mut self.env)?[0];
+                self.belongs(element, *inside, ground, into);
+                Ok(())
+            }
+            Node::Sets(relation, a, b) => self.sets(*relation, a, b, span, ground, into),
+            Node::Clique(set, edges) if matches!(**set, Node::Subset) => {
+                let edges = self.evaluator.set(edges, &mut self.env)?;
+                let pairs = edges.iter().map(|pair| (self.label(pair[0]), self.label(pair[1])));
+                into.others.push(SubsetCondition::Clique(pairs.collect()));
+                Ok(())
+            }
+            Node::Any(items) => self.meets_one(items, span, ground, into),
+            _ => fail(message::condition(span)),
+        }
+    }
+
+    fn negated(
+        &mut self,
+        inner: &Node,
+        span: Span,
+        ground: &Set,
+        into: &mut Gathered,
+    ) -> Evaluated<()> {
+        let turned = match inner {
+            Node::Member(inside, tuple, set) => Node::Member(!inside, tuple.clone(), set.clone()),
+            Node::Parity(odd, inner, span) => Node::Parity(!odd, inner.clone(), *span),
+            Node::Sets(Relation::Equal, a, b) => {
+                Node::Sets(Relation::NotEqual, a.clone(), b.clone())
+            }
+            _ => return fail(message::condition(span)),
+        };
+        self.condition(&turned, span, ground, into)
+    }
+
+    fn belongs(&mut self, element: Element, inside: bool, ground: &Set, into: &mut Gathered) {
+        match (ground.contains(&[element]), inside) {
+            (true, true) => into.others.push(SubsetCondition::Contains(self.label(element))),
+            (true, false) => into.others.push(SubsetCondition::Avoids(self.label(element))),
+            (false, true) => into.impossible = true,
+            (false, false) => {}
+        }
+    }
+
+    /// `i ∈ S ∨ j ∈ S`.
+    fn meets_one(
+        &mut self,
+        items: &[Node],
+        span: Span,
+        ground: &Set,
+        into: &mut Gathered,
+    ) -> Evaluated<()> {
+        let mut elements = Vec::with_capacity(items.len());
+        for item in items {
+            let Node::Member(true, tuple, set) = item else {
+                return fail(message::condition(span));
+            };
+            if !matches!(**set, Node::Subset) {
+                return fail(message::condition(span));
+            }
+            elements.push(self.evaluator.tuple(tuple, &mut self.env)?[0]);
+        }
+        self.meets(&elements, ground, into);
+        Ok(())
+    }
+
+    fn meets(&mut self, elements: &[Element], ground: &Set, into: &mut Gathered) {
+        let known = elements.iter().filter(|&&e| ground.contains(&[e]));
+        let labels: Vec<LabelId> = known.map(|&e| self.label(e)).collect();
+        if labels.is_empty() {
+            into.impossible = true;
+        } else {
+            into.others.push(SubsetCondition::Meets(labels));
+        }
+    }
+
+    /// The weights and the constant of a number that depends on the subset.
+    fn additive(
+        &mut self,
+        node: &Node,
+        span: Span,
+        ground: &Set,
+    ) -> Evaluated<(Vec<Number>, Number)> {
+        let mut form = Linear::default();
+        self.evaluator.linear(node, &Number::ONE, Guard::ALWAYS, &mut self.env, &mut form)?;
+        weights(&form.loose, form.constant, ground)
+            .map_or_else(|| fail(message::condition(span)), Ok)
+    }
+
+    /// `a mod 2 = 1`.
+    fn remainder(
+        &mut self,
+        relation: Relation,
+        inner: &Node,
+        two: &Node,
+        rest: &Node,
+        span: Span,
+        into: &mut Gathered,
+    ) -> Evaluated<()> {
+        let two = self.evaluator.number(two, &mut self.env)?;
+        let rest = self.evaluator.number(rest, &mut self.env)?;
+        let bit = [Number::ZERO, Number::ONE].iter().position(|n| *n == rest);
+        let equal = match relation {
+            Relation::Equal => true,
+            Relation::NotEqual => false,
+            _ => return fail(message::condition(span)),
+        };
+        match bit {
+            Some(bit) if two == Number::from(2) => {
+                self.parity((bit == 1) == equal, inner, span, into)
+            }
+            _ => fail(message::condition(span)),
+        }
+    }
+
+    fn parity(
+        &mut self,
+        odd: bool,
+        inner: &Node,
+        span: Span,
+        into: &mut Gathered,
+    ) -> Evaluated<()> {
+        let Some(ground) = self.evaluator.ground.clone() else {
+            return fail(message::condition(span));
+        };
+        let (weights, constant) = self.additive(inner, span, &ground)?;
+        if weights.iter().any(|w| *w != Number::ONE) || !constant.is_int() {
+            return fail(message::condition(span));
+        }
+        let shifted = constant.numerator() % 2_u8 != 0_u8;
+        into.others.push(SubsetCondition::Odd(odd != shifted));
+        Ok(())
+    }
+
+    fn comparison(
+        &mut self,
+        relation: Relation,
+        a: &Node,
+        b: &Node,
+        span: Span,
+        ground: &Set,
+        into: &mut Gathered,
+    ) -> Evaluated<()> {
+        let difference = Node::Add(vec![(false, a.clone()), (true, b.clone())]);
+        let (weights, constant) = self.additive(&difference, span, ground)?;
+        let first = weights.first().cloned().unwrap_or_default();
+        let uniform = weights.iter().all(|w| *w == first) && !first.is_zero();
+        if uniform || ground.is_empty() {
+            let scale = if first.is_zero() { Number::ONE } else { first };
+            let relation = if scale < Number::ZERO { turned(relation) } else { relation };
+            return size(relation, &(-constant / scale), ground, span, into);
+        }
+        // Σ w + constant ⋛ 0
+        let negative = || weights.iter().map(|w| -w.clone()).collect::<Vec<_>>();
+        let (weights, over) = match relation {
+            Relation::Greater => (weights, -constant),
+            Relation::AtLeast => {
+                let over = just_below(&weights, &-constant);
+                (weights, over)
+            }
+            Relation::Less => (negative(), constant),
+            Relation::AtMost => {
+                let weights = negative();
+                let over = just_below(&weights, &constant);
+                (weights, over)
+            }
+            _ => return fail(message::condition(span)),
+        };
+        let labels = ground.iter().map(|member| self.label(member[0])).collect::<Vec<_>>();
+        let weights = labels.into_iter().zip(weights).collect();
+        into.others.push(SubsetCondition::WeightOver { weights, over });
+        Ok(())
+    }
+
+    /// `S ≠ ∅`, `S ∩ T ≠ ∅`, `T ⊆ S`, and their like.
+    fn sets(
+        &mut self,
+        relation: Relation,
+        a: &Node,
+        b: &Node,
+        span: Span,
+        ground: &Set,
+        into: &mut Gathered,
+    ) -> Evaluated<()> {
+        let (own, other, on_left) =
+            match (self.evaluator.depends_on_subset(a), self.evaluator.depends_on_subset(b)) {
+                (true, false) => (a, b, true),
+                (false, true) => (b, a, false),
+                _ => return fail(message::condition(span)),
+            };
+        let other = self.evaluator.set(other, &mut self.env)?;
+        let own_bare = matches!(own, Node::Subset);
+        let all: Vec<Element> = ground.iter().map(|member| member[0]).collect();
+        match (relation, on_left) {
+            (Relation::Equal | Relation::NotEqual, _) if other.is_empty() => {
+                let members = self.evaluator.members_by_subset(own, &mut self.env)?;
+                self.emptiness(&members, relation == Relation::NotEqual, ground, into);
+            }
+            (Relation::NotEqual, _) if own_bare => {
+                let whole =
+                    other.len() == ground.len() && all.iter().all(|&e| other.contains(&[e]));
+                if !whole {
+                    return fail(message::condition(span));
+                }
+                into.at_most = into
+                    .at_most
+                    .min(u32::try_from(all.len()).unwrap_or(u32::MAX).saturating_sub(1));
+            }
+            (Relation::SubsetOrEqual, true) if own_bare => {
+                for &element in all.iter().filter(|&&e| !other.contains(&[e])) {
+                    self.belongs(element, false, ground, into);
+                }
+            }
+            (Relation::SubsetOrEqual, false) if own_bare => {
+                for member in other.iter() {
+                    self.belongs(member[0], true, ground, into);
+                }
+            }
+            _ => return fail(message::condition(span)),
+        }
+        Ok(())
+    }
+
+    /// A set whose members are in it by their membership in S is empty, or is not.
+    fn emptiness(
+        &mut self,
+        members: &[(Element, bool)],
+        wanted: bool,
+        ground: &Set,
+        into: &mut Gathered,
+    ) {
+        if !wanted {
+            for &(element, inside) in members {
+                self.belongs(element, !inside, ground, into);
+            }
+            return;
+        }
+        let in_s: Vec<Element> =
+            members.iter().filter(|(_, inside)| *inside).map(|(e, _)| *e).collect();
+        if in_s.len() == ground.len() && !ground.is_empty() {
+            into.at_least = into.at_least.max(1);
+        } else if in_s.len() == members.len() {
+            self.meets(&in_s, ground, into);
+        } else if members.iter().all(|(e, _)| ground.contains(&[*e])) {
+            // T ∖ S ≠ ∅: fewer than |T| of T are in S
+            let weights: Vec<_> =
+                members.iter().map(|&(e, _)| (self.label(e), -Number::ONE)).collect();
+            let over = -Number::from(weights.len());
+            into.others.push(SubsetCondition::WeightOver { weights, over });
+        }
+    }
+}
+
+/// `|S| ⋛ k`.
+fn size(
+    relation: Relation,
+    bound: &Number,
+    ground: &Set,
+    span: Span,
+    into: &mut Gathered,
+) -> Evaluated<()> {
+    let all = u32::try_from(ground.len()).unwrap_or(u32::MAX);
+    let narrow =
+        |n: IBig| if n < IBig::ZERO { None } else { Some(u32::try_from(n).unwrap_or(u32::MAX)) };
+    let whole = bound.is_int();
+    let (floor, ceiling) = (narrow(bound.floor()), narrow(bound.ceil()));
+    let mut at_least = |n: Option<u32>| into.at_least = into.at_least.max(n.unwrap_or(0));
+    match relation {
+        Relation::AtLeast => at_least(ceiling),
+        Relation::Greater => at_least(floor.map(|n| n.saturating_add(1))),
+        Relation::AtMost | Relation::Less | Relation::Equal => {
+            if relation == Relation::Equal {
+                at_least(ceiling);
+                into.impossible |= !whole;
+            }
+            let less = relation == Relation::Less && whole;
+            match floor.and_then(|n| if less { n.checked_sub(1) } else { Some(n) }) {
+                Some(n) => into.at_most = into.at_most.min(n),
+                None => into.impossible = true,
+            }
+        }
+        Relation::NotEqual => {
+            let zero = *bound == Number::ZERO;
+            if zero {
+                at_least(Some(1));
+            } else if *bound == Number::from(all) {
+                into.at_most = into.at_most.min(all.saturating_sub(1));
+            } else {
+                return fail(message::condition(span));
+            }
+        }
+        _ => return fail(message::condition(span)),
+    }
+    Ok(())
+}
+
+fn turned(relation: Relation) -> Relation {
+    match relation {
+        Relation::Less => Relation::Greater,
+        Relation::AtMost => Relation::AtLeast,
+        Relation::Greater => Relation::Less,
+        Relation::AtLeast => Relation::AtMost,
+        other => other,
+    }
+}
+
+/// The greatest multiple of the weights' common step that is less than `bound`: a sum of
+/// weights is at least `bound` exactly when it is more than that.
+fn just_below(weights: &[Number], bound: &Number) -> Number {
+    use dashu_int::ops::Gcd;
+    let mut step = UBig::ONE;
+    for weight in weights {
+        let bottom = weight.denominator();
+        step = &step / (&step).gcd(bottom) * bottom;
+    }
+    let scaled = (bound * Number::from(step.clone())).ceil() - IBig::ONE;
+    Number::from_parts(scaled, step)
+}

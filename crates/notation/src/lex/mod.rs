@@ -1,0 +1,275 @@
+//! The lexer: text to tokens. It never fails; what it does not know becomes
+//! [`Kind::Unknown`], which the parser names in its message.
+
+mod table;
+mod tex;
+pub(crate) mod token;
+
+use crate::place::Span;
+use token::{Gap, Kind, Token};
+
+/// All tokens of `text` from byte `start` on, ending with one of kind `End`. `O(bytes)`.
+pub(crate) fn lex(text: &str, start: usize) -> Vec<Token> {
+    let mut lexer =
+        Lexer { text, at: start, gap: Gap::default(), tokens: Vec::new(), environment: 0 };
+    lexer.gap.add(Gap::NEWLINE);
+    while lexer.at < text.len() {
+        let before = lexer.at;
+        lexer.step();
+        debug_assert!(lexer.at > before, "the lexer must move on");
+    }
+    lexer.gap.add(Gap::NEWLINE);
+    lexer.push(Kind::End, text.len(), text.len());
+    settle_braces(&mut lexer.tokens);
+    lexer.tokens
+}
+
+struct Lexer<'t> {
+    text: &'t str,
+    at: usize,
+    gap: Gap,
+    tokens: Vec<Token>,
+    /// How many TeX environments are open, in which a line break ends nothing.
+    environment: u32,
+}
+
+impl Lexer<'_> {
+    fn rest(&self) -> &str {
+        &self.text[self.at..]
+    }
+
+    fn push(&mut self, kind: Kind, start: usize, end: usize) {
+        self.push_text(kind, start, end, String::new());
+    }
+
+    fn push_text(&mut self, kind: Kind, start: usize, end: usize, text: String) {
+        let gap = std::mem::take(&mut self.gap);
+        self.tokens.push(Token { kind, span: Span::new(start, end), gap, text });
+    }
+
+    fn take(&mut self, kind: Kind, length: usize) {
+        let start = self.at;
+        self.at += length;
+        self.push(kind, start, self.at);
+    }
+
+    fn step(&mut self) {
+        let Some(c) = self.rest().chars().next() else { return };
+        match c {
+            ' ' | '\t' | '\n' | '\r' | '~' | '\u{a0}' | '\u{feff}' => self.white(),
+            '#' | '%' => self.comment(),
+            '$' => self.at += 1,
+            '\\' => self.backslash(),
+            '&' => self.ampersand(),
+            '0'..='9' => self.number(),
+            '.' if self.rest()[1..].starts_with(|d: char| d.is_ascii_digit()) => self.number(),
+            _ => self.sign_or_word(c),
+        }
+    }
+
+    fn white(&mut self) {
+        let rest = self.rest();
+        let length = rest.find(|c: char| !is_white(c)).unwrap_or(rest.len());
+        let piece = &rest[..length];
+        let lines = piece.bytes().filter(|&b| b == b'\n').count();
+        let mut gap = Gap::SPACE;
+        if length > 1 || piece.contains('\t') {
+            gap.add(Gap::WIDE);
+        }
+        if lines > 0 && self.environment == 0 {
+            gap.add(Gap::NEWLINE);
+            // a comment line between two breaks is no blank line
+            if lines > 1 {
+                gap.add(Gap::BLANK_LINE);
+            }
+        }
+        self.gap.add(gap);
+        self.at += length;
+    }
+
+    fn comment(&mut self) {
+        let rest = self.rest();
+        self.at += rest.find('\n').unwrap_or(rest.len());
+    }
+
+    fn ampersand(&mut self) {
+        let length = self.rest().bytes().take_while(|&b| b == b'&').count();
+        self.gap.add(Gap::QUAD);
+        self.gap.add(Gap::SPACE);
+        self.at += length;
+    }
+
+    fn number(&mut self) {
+        let bytes = self.text.as_bytes();
+        let digits = |mut i: usize| {
+            while bytes.get(i).is_some_and(u8::is_ascii_digit) {
+                i += 1;
+            }
+            i
+        };
+        let mut end = digits(self.at);
+        if bytes.get(end) == Some(&b'.') && bytes.get(end + 1).is_some_and(u8::is_ascii_digit) {
+            end = digits(end + 1);
+        }
+        if matches!(bytes.get(end), Some(b'e' | b'E')) {
+            let sign = usize::from(matches!(bytes.get(end + 1), Some(b'+' | b'-')));
+            if bytes.get(end + 1 + sign).is_some_and(u8::is_ascii_digit) {
+                end = digits(end + 1 + sign);
+            }
+        }
+        self.take(Kind::Number, end - self.at);
+    }
+
+    fn sign_or_word(&mut self, c: char) {
+        if let Some(&(sign, kind)) =
+            table::LONG_SIGNS.iter().find(|(s, _)| self.rest().starts_with(s))
+        {
+            return self.take(kind, sign.len());
+        }
+        if let Some(kind) = table::sign(c) {
+            return self.take(kind, c.len_utf8());
+        }
+        if table::small(c).is_some() {
+            return self.small();
+        }
+        if c.is_alphabetic() {
+            return self.word();
+        }
+        self.take(Kind::Unknown, c.len_utf8());
+    }
+
+    /// A run of small raised or lowered characters: `xᵢⱼ` is `x_{ij}`, `y²` is `y^{2}`.
+    fn small(&mut self) {
+        let start = self.at;
+        let mut raised = None;
+        let mut plain = String::new();
+        for c in self.text[start..].chars() {
+            match table::small(c) {
+                Some((up, to)) if raised.is_none_or(|r| r == up) => {
+                    raised = Some(up);
+                    plain.push(to);
+                    self.at += c.len_utf8();
+                }
+                _ => break,
+            }
+        }
+        let end = self.at;
+        self.push(if raised == Some(true) { Kind::Caret } else { Kind::Underscore }, start, end);
+        self.push(Kind::LeftBrace, start, end);
+        let inner = lex(&plain, 0);
+        for token in inner.iter().filter(|t| t.kind != Kind::End) {
+            let text = if token.kind == Kind::Number {
+                token.span.of(&plain).to_owned()
+            } else {
+                token.text.clone()
+            };
+            self.push_text(token.kind, start, end, text);
+        }
+        self.push(Kind::RightBrace, start, end);
+    }
+
+    fn word(&mut self) {
+        let start = self.at;
+        let rest = self.rest();
+        if let Some(length) = such_that_short(rest) {
+            return self.take(Kind::SuchThat, length);
+        }
+        let belongs = |c: char| {
+            (c.is_alphabetic() && table::sign(c).is_none() && table::small(c).is_none())
+                || c.is_ascii_digit()
+                || c == '\''
+        };
+        let length = rest.find(|c: char| !belongs(c)).unwrap_or(rest.len());
+        let word = &rest[..length];
+        if let Some((kind, length)) = pair(word, rest) {
+            return self.take(kind, length);
+        }
+        let line_start =
+            self.gap.has(Gap::NEWLINE) || self.tokens.last().is_none_or(|t| t.kind == Kind::Break);
+        let lower = if length <= 16 { word.to_lowercase() } else { String::new() };
+        let kind = match lower.as_str() {
+            "data" if line_start => Some(Kind::Data),
+            "definitions" | "define" if line_start => Some(Kind::Definitions),
+            "minimise" | "minimize" | "maximise" | "maximize" => table::word(&lower),
+            _ => table::word(word),
+        };
+        match kind {
+            Some(kind) => self.take(kind, length),
+            None => {
+                let text = word.to_owned();
+                self.at += length;
+                self.push_text(Kind::Word, start, start + length, text);
+            }
+        }
+    }
+}
+
+fn is_white(c: char) -> bool {
+    matches!(c, ' ' | '\t' | '\n' | '\r' | '~' | '\u{a0}' | '\u{feff}')
+}
+
+/// The length of `s.t.` and its variants at the start of `rest`.
+fn such_that_short(rest: &str) -> Option<usize> {
+    let found = ["s.t.", "S.t.", "s. t.", "s.t"].iter().find(|s| rest.starts_with(**s))?;
+    Some(found.len())
+}
+
+/// A word that makes one sign with the word after it on the same line.
+fn pair(word: &str, rest: &str) -> Option<(Kind, usize)> {
+    if word.len() > 8 {
+        return None;
+    }
+    let lower = word.to_lowercase();
+    let after = &rest[word.len()..];
+    let spaces = after.len() - after.trim_start_matches([' ', '\t', '~']).len();
+    let next = &after[spaces..];
+    let end = next.find(|c: char| !c.is_alphanumeric()).unwrap_or(next.len());
+    let next = &next[..end];
+    let &(_, second, kind) =
+        table::WORD_PAIRS.iter().find(|(a, b, _)| *a == lower && *b == next)?;
+    (spaces > 0).then(|| (kind, word.len() + spaces + second.len()))
+}
+
+/// `V\{r}` is `V ∖ {r}`: a TeX brace that a plain one closes was a set difference.
+fn settle_braces(tokens: &mut Vec<Token>) {
+    let mut open: Vec<usize> = Vec::new();
+    let mut split: Vec<usize> = Vec::new();
+    for (i, token) in tokens.iter().enumerate() {
+        let tex = token.span.end - token.span.start == 2;
+        match token.kind {
+            Kind::LeftBrace => open.push(i),
+            Kind::RightBrace => {
+                if let Some(start) = open.pop() {
+                    let span = tokens[start].span;
+                    if span.end - span.start == 2 && !tex && tokens[start].text.is_empty() {
+                        split.push(start);
+                    }
+                }
+            }
+            _ => {}
+        }
+    }
+    if split.is_empty() {
+        return;
+    }
+    split.sort_unstable();
+    let mut out = Vec::with_capacity(tokens.len() + split.len());
+    let mut next = split.iter().copied().peekable();
+    for (i, mut token) in tokens.drain(..).enumerate() {
+        if next.peek() == Some(&i) {
+            next.next();
+            let middle = token.span.start + 1;
+            let first = Span { start: token.span.start, end: middle };
+            out.push(Token {
+                kind: Kind::Difference,
+                span: first,
+                gap: token.gap,
+                text: String::new(),
+            });
+            token.span.start = middle;
+            token.gap = Gap::default();
+        }
+        out.push(token);
+    }
+    *tokens = out;
+}

@@ -1,0 +1,252 @@
+//! The three spellings: signs, TeX commands and plain words, each with the token it stands for.
+
+use super::token::Kind;
+
+/// Unicode and ASCII signs of one character.
+pub(super) fn sign(c: char) -> Option<Kind> {
+    Some(match c {
+        '+' => Kind::Plus,
+        '-' | '−' | '–' => Kind::Minus,
+        '*' | '·' | '⋅' | '∗' => Kind::Dot,
+        '×' => Kind::Cross,
+        '/' | '∕' | '÷' => Kind::Slash,
+        '^' => Kind::Caret,
+        '_' => Kind::Underscore,
+        '=' | '≔' => Kind::Equal,
+        '≠' => Kind::NotEqual,
+        '<' => Kind::Less,
+        '≤' | '⩽' => Kind::AtMost,
+        '>' => Kind::Greater,
+        '≥' | '⩾' => Kind::AtLeast,
+        '∈' => Kind::In,
+        '∉' => Kind::NotIn,
+        '⊂' | '⊊' => Kind::Subset,
+        '⊆' => Kind::SubsetOrEqual,
+        '≡' => Kind::Congruent,
+        '∪' => Kind::Union,
+        '∩' => Kind::Intersection,
+        '∖' | '⧵' => Kind::Difference,
+        '∧' => Kind::And,
+        '∨' => Kind::Or,
+        '¬' => Kind::Not,
+        '∀' => Kind::ForAll,
+        'Σ' | '∑' => Kind::Sum,
+        '∏' | 'Π' => Kind::Product,
+        ':' | '∣' => Kind::Colon,
+        ',' => Kind::Comma,
+        '.' => Kind::Period,
+        ';' => Kind::Break,
+        '…' | '⋯' | '‥' => Kind::Dots,
+        '(' => Kind::LeftParen,
+        ')' => Kind::RightParen,
+        '{' => Kind::LeftBrace,
+        '}' => Kind::RightBrace,
+        '[' => Kind::LeftBracket,
+        ']' => Kind::RightBracket,
+        '|' => Kind::Bar,
+        '⌊' => Kind::LeftFloor,
+        '⌋' => Kind::RightFloor,
+        '⌈' => Kind::LeftCeiling,
+        '⌉' => Kind::RightCeiling,
+        '∅' | 'Ø' => Kind::EmptySet,
+        '∞' => Kind::Infinity,
+        'ℕ' => Kind::Naturals,
+        'ℤ' => Kind::Integers,
+        'ℝ' => Kind::Reals,
+        '𝔹' => Kind::Binaries,
+        _ => return None,
+    })
+}
+
+/// ASCII signs of more than one character, longest first.
+pub(super) const LONG_SIGNS: &[(&str, Kind)] = &[
+    ("...", Kind::Dots),
+    ("..", Kind::Dots),
+    ("<=", Kind::AtMost),
+    ("=<", Kind::AtMost),
+    (">=", Kind::AtLeast),
+    ("!=", Kind::NotEqual),
+    ("<>", Kind::NotEqual),
+    (":=", Kind::Equal),
+    ("==", Kind::Equal),
+    ("&&", Kind::And),
+];
+
+/// Plain words.
+pub(super) fn word(text: &str) -> Option<Kind> {
+    Some(match text {
+        "sum" => Kind::Sum,
+        "prod" => Kind::Product,
+        "forall" | "for" => Kind::ForAll,
+        "in" => Kind::In,
+        "notin" => Kind::NotIn,
+        "subset" => Kind::Subset,
+        "subseteq" => Kind::SubsetOrEqual,
+        "cross" => Kind::Cross,
+        "union" => Kind::Union,
+        "inter" => Kind::Intersection,
+        "setminus" => Kind::Difference,
+        "and" => Kind::And,
+        "or" => Kind::Or,
+        "not" => Kind::Not,
+        "odd" => Kind::Odd,
+        "even" => Kind::Even,
+        "floor" => Kind::Floor,
+        "ceil" => Kind::Ceiling,
+        "min" => Kind::Min,
+        "max" => Kind::Max,
+        "inf" | "infinity" => Kind::Infinity,
+        "emptyset" => Kind::EmptySet,
+        "mod" => Kind::Modulo,
+        "free" | "unrestricted" => Kind::Free,
+        "clique" => Kind::Clique,
+        "minimise" | "minimize" => Kind::Minimise,
+        "maximise" | "maximize" => Kind::Maximise,
+        _ => return None,
+    })
+}
+
+/// Plain expressions of two words.
+pub(super) const WORD_PAIRS: &[(&str, &str, Kind)] = &[
+    ("subject", "to", Kind::SubjectTo),
+    ("such", "that", Kind::SuchThat),
+    ("for", "all", Kind::ForAll),
+    ("for", "each", Kind::ForAll),
+    ("for", "every", Kind::ForAll),
+    ("not", "in", Kind::NotIn),
+];
+
+/// TeX commands, without the backslash.
+pub(super) fn command(name: &str) -> Option<Kind> {
+    Some(match name {
+        "sum" => Kind::Sum,
+        "prod" => Kind::Product,
+        "forall" => Kind::ForAll,
+        "in" => Kind::In,
+        "notin" => Kind::NotIn,
+        "subset" | "subsetneq" | "subsetneqq" => Kind::Subset,
+        "subseteq" | "subseteqq" => Kind::SubsetOrEqual,
+        "le" | "leq" | "leqslant" => Kind::AtMost,
+        "ge" | "geq" | "geqslant" => Kind::AtLeast,
+        "lt" => Kind::Less,
+        "gt" => Kind::Greater,
+        "ne" | "neq" => Kind::NotEqual,
+        "equiv" => Kind::Congruent,
+        "bmod" | "mod" => Kind::Modulo,
+        "cup" => Kind::Union,
+        "cap" => Kind::Intersection,
+        "setminus" | "smallsetminus" | "backslash" => Kind::Difference,
+        "times" => Kind::Cross,
+        "cdot" | "ast" => Kind::Dot,
+        "div" => Kind::Slash,
+        "land" | "wedge" => Kind::And,
+        "lor" | "vee" => Kind::Or,
+        "lnot" | "neg" => Kind::Not,
+        "mid" | "colon" => Kind::Colon,
+        "ldots" | "dots" | "cdots" | "dotsc" => Kind::Dots,
+        "lfloor" => Kind::LeftFloor,
+        "rfloor" => Kind::RightFloor,
+        "lceil" => Kind::LeftCeiling,
+        "rceil" => Kind::RightCeiling,
+        "lvert" | "rvert" | "vert" => Kind::Bar,
+        "lbrace" => Kind::LeftBrace,
+        "rbrace" => Kind::RightBrace,
+        "emptyset" | "varnothing" => Kind::EmptySet,
+        "infty" => Kind::Infinity,
+        "min" => Kind::Min,
+        "max" => Kind::Max,
+        "frac" | "tfrac" | "dfrac" => Kind::Fraction,
+        _ => return None,
+    })
+}
+
+/// TeX commands that say nothing about the model.
+pub(super) fn vanishes(name: &str) -> bool {
+    matches!(
+        name,
+        "left"
+            | "right"
+            | "big"
+            | "Big"
+            | "bigl"
+            | "bigr"
+            | "Bigl"
+            | "Bigr"
+            | "bigg"
+            | "Bigg"
+            | "biggl"
+            | "biggr"
+            | "nonumber"
+            | "notag"
+            | "limits"
+            | "nolimits"
+            | "displaystyle"
+            | "textstyle"
+            | "scriptstyle"
+            | "hfill"
+            | "null"
+            | "noindent"
+            | "centering"
+            | "hline"
+    )
+}
+
+/// TeX commands that only make space.
+pub(super) fn spaces(name: &str) -> bool {
+    matches!(name, "quad" | "qquad" | "hskip" | "enspace" | "thinspace")
+}
+
+/// Greek letters and a few others, as names.
+pub(super) fn letter(name: &str) -> Option<&'static str> {
+    Some(match name {
+        "alpha" => "α",
+        "beta" => "β",
+        "gamma" => "γ",
+        "delta" => "δ",
+        "epsilon" | "varepsilon" => "ε",
+        "zeta" => "ζ",
+        "eta" => "η",
+        "theta" | "vartheta" => "θ",
+        "iota" => "ι",
+        "kappa" => "κ",
+        "lambda" => "λ",
+        "mu" => "μ",
+        "nu" => "ν",
+        "xi" => "ξ",
+        "pi" => "π",
+        "rho" | "varrho" => "ρ",
+        "sigma" => "σ",
+        "tau" => "τ",
+        "upsilon" => "υ",
+        "phi" | "varphi" => "φ",
+        "chi" => "χ",
+        "psi" => "ψ",
+        "omega" => "ω",
+        "Gamma" => "Γ",
+        "Delta" => "Δ",
+        "Theta" => "Θ",
+        "Lambda" => "Λ",
+        "Xi" => "Ξ",
+        "Phi" => "Φ",
+        "Psi" => "Ψ",
+        "Omega" => "Ω",
+        "ell" => "ℓ",
+        _ => return None,
+    })
+}
+
+/// Small raised and lowered characters with the plain ones they stand for.
+pub(super) fn small(c: char) -> Option<(bool, char)> {
+    const LOWERED: &str = "₀0₁1₂2₃3₄4₅5₆6₇7₈8₉9ₐaₑeₕhᵢiⱼjₖkₗlₘmₙnₒoₚpᵣrₛsₜtᵤuᵥvₓx₊+₋-";
+    const RAISED: &str = "⁰0¹1²2³3⁴4⁵5⁶6⁷7⁸8⁹9⁺+⁻-ⁿnⁱi";
+    let find = |table: &str| {
+        let mut pairs = table.chars();
+        while let (Some(from), Some(to)) = (pairs.next(), pairs.next()) {
+            if from == c {
+                return Some(to);
+            }
+        }
+        None
+    };
+    find(LOWERED).map(|to| (false, to)).or_else(|| find(RAISED).map(|to| (true, to)))
+}

@@ -1,0 +1,242 @@
+//! Title, parts, and where each line ends.
+
+use super::{Parser, Surroundings};
+use crate::diagnostic::syntax as message;
+use crate::lex::lex;
+use crate::lex::token::{Gap, Kind as T};
+use crate::place::Span;
+use crate::syntax::{Formulation, Objective};
+
+/// The title, if the first line that holds anything is one, and the byte where the rest begins.
+pub(super) fn title(text: &str) -> (Option<String>, usize) {
+    let mut start = 0;
+    for line in text.split_inclusive('\n') {
+        let trimmed = line.trim();
+        if trimmed.is_empty() || trimmed.starts_with(['#', '%']) {
+            start += line.len();
+            continue;
+        }
+        if trimmed.len() > 400 || !is_title(trimmed) {
+            return (None, start);
+        }
+        return (Some(trimmed.to_owned()), start + line.len());
+    }
+    (None, 0)
+}
+
+/// Whether a line holds no relation, part word or TeX environment.
+fn is_title(line: &str) -> bool {
+    if line.starts_with("$$") || line.starts_with("\\[") || line.contains("\\begin") {
+        return false;
+    }
+    let tokens = lex(line, 0);
+    let opens_part =
+        |kind: T| kind.is_part() || matches!(kind, T::SuchThat | T::Min | T::Max | T::Text);
+    let first_opens = tokens.first().is_some_and(|t| opens_part(t.kind));
+    let strict = |kind: T| kind.is_relation() && kind != T::In;
+    let inside =
+        |kind: T| strict(kind) || matches!(kind, T::SubjectTo | T::Sum | T::Minimise | T::Maximise);
+    // "in" and "for" are words of a title; ∈ and ∀ are not
+    let signs = line.contains(['∈', '∀']) || line.contains("\\in") || line.contains("\\forall");
+    !first_opens && !signs && !tokens.iter().any(|t| inside(t.kind))
+}
+
+/// The parts of a text.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+enum Part {
+    None,
+    Data,
+    Definitions,
+    Objective { maximise: bool, start: Span },
+    Statements,
+}
+
+impl Parser<'_> {
+    pub(super) fn document(&mut self) -> Formulation {
+        let mut tree = Formulation::default();
+        let mut part = Part::None;
+        while self.at + 1 < self.tokens.len() {
+            let before = self.at;
+            self.end = self.tokens.len() - 1;
+            if let Some(next) = self.part_word() {
+                part = next;
+            } else if matches!(self.peek(), T::Break | T::Comma | T::Period) {
+                self.bump();
+            } else {
+                self.line_of(part, &mut tree);
+            }
+            debug_assert!(self.at > before, "the parser must move on");
+        }
+        tree
+    }
+
+    /// A word that opens a part, at the start of a line.
+    fn part_word(&mut self) -> Option<Part> {
+        let start = self.here();
+        let part = match self.peek() {
+            T::Data => Part::Data,
+            T::Definitions => Part::Definitions,
+            T::Minimise | T::Min => Part::Objective { maximise: false, start },
+            T::Maximise | T::Max => Part::Objective { maximise: true, start },
+            T::SubjectTo | T::SuchThat => Part::Statements,
+            _ => return None,
+        };
+        self.bump();
+        self.eat(T::Colon);
+        Some(part)
+    }
+
+    fn line_of(&mut self, part: Part, tree: &mut Formulation) {
+        let first = self.at;
+        let described = matches!(part, Part::Data | Part::Definitions);
+        let (end, after) = if described { self.scan_described() } else { self.scan() };
+        self.end = end;
+        self.place = Surroundings { wide_ends: described, ..Surroundings::default() };
+        let span = self.tokens[first].span.to(self.tokens[after.max(first + 1) - 1].span);
+        let read = self.part_line(part, tree, after, span);
+        if read.is_none() {
+            let words = self.tokens[first..end].iter().filter(|t| t.kind == T::Word);
+            tree.unread.extend(words.map(|t| t.text.clone()));
+        }
+        match part {
+            Part::Data => tree.ends.data = Some(span),
+            Part::Statements => tree.ends.statements = Some(span),
+            _ => {}
+        }
+        self.depth = 0;
+        self.at = after.max(first + 1);
+    }
+
+    fn part_line(
+        &mut self,
+        part: Part,
+        tree: &mut Formulation,
+        after: usize,
+        span: Span,
+    ) -> Option<()> {
+        match part {
+            Part::None => {
+                self.report(message::outside_parts(span));
+                return None;
+            }
+            Part::Data => {
+                let mut line = self.data_line().ok()?;
+                line.remark = self.remark(after);
+                tree.data.push(line);
+            }
+            Part::Definitions => {
+                let mut line = self.data_line().ok()?;
+                line.remark = self.remark(after);
+                tree.definitions.push(line);
+            }
+            Part::Objective { maximise, start } => {
+                let expression = self.objective().ok()?;
+                let objective = Objective { maximise, expression, span: start.to(span) };
+                match &tree.objective {
+                    Some(first) => {
+                        let diagnostic = message::second_objective(objective.span, first.span);
+                        self.report(diagnostic);
+                    }
+                    None => tree.objective = Some(objective),
+                }
+            }
+            Part::Statements => tree.statements.push(self.statement().ok()?),
+        }
+        Some(())
+    }
+
+    /// The text from the end of what was read to the end of the line.
+    fn remark(&self, after: usize) -> Option<String> {
+        let from = self.tokens[self.end..after].first()?;
+        let to = self.tokens[after - 1].span.end;
+        let comma = from.kind == T::Comma;
+        let text = if from.kind == T::Text && after == self.end + 1 {
+            from.text.as_str()
+        } else {
+            self.text.get(from.span.start as usize + usize::from(comma)..to as usize)?
+        };
+        let text = text.split('\n').next().unwrap_or("").trim();
+        (!text.is_empty()).then(|| text.to_owned())
+    }
+
+    /// The end of the line that starts here. `O(tokens of the line)`.
+    fn scan(&self) -> (usize, usize) {
+        let (mut depth, mut quantified) = (0_u32, false);
+        let last = self.tokens.len() - 1;
+        for i in self.at..last {
+            let token = &self.tokens[i];
+            if i > self.at && self.line_ends_before(i, depth, quantified) {
+                return (i, i);
+            }
+            match token.kind {
+                T::Break if i > self.at => return (i, i),
+                T::ForAll => quantified = true,
+                kind if kind.opens() => depth += 1,
+                kind if kind.closes() => depth = depth.saturating_sub(1),
+                _ => {}
+            }
+        }
+        (last, last)
+    }
+
+    fn line_ends_before(&self, i: usize, depth: u32, quantified: bool) -> bool {
+        let token = &self.tokens[i];
+        if token.gap.has(Gap::BLANK_LINE) {
+            return true;
+        }
+        if token.kind.is_part() {
+            return true;
+        }
+        let line_break = token.gap.has(Gap::NEWLINE);
+        if token.kind == T::SuchThat && (line_break || !quantified) && depth == 0 {
+            return true;
+        }
+        line_break && depth == 0 && !token.kind.continues() && !self.tokens[i - 1].kind.continues()
+    }
+
+    /// The end of what is read of a `data` line that starts here, and of its remark.
+    fn scan_described(&self) -> (usize, usize) {
+        let mut depth = 0_u32;
+        let last = self.tokens.len() - 1;
+        let mut remark = None;
+        for i in self.at..last {
+            let token = &self.tokens[i];
+            if i > self.at {
+                let ends = match remark {
+                    Some(_) => {
+                        token.gap.has(Gap::NEWLINE)
+                            || token.kind == T::Break && token.span.of(self.text) != ";"
+                    }
+                    None => token.kind == T::Break || self.line_ends_before(i, depth, true),
+                };
+                if ends {
+                    return (remark.unwrap_or(i), i);
+                }
+                if remark.is_none() && depth == 0 && self.remark_starts(i) {
+                    remark = Some(i);
+                }
+            }
+            if token.kind.opens() {
+                depth += 1;
+            } else if token.kind.closes() {
+                depth = depth.saturating_sub(1);
+            }
+        }
+        (remark.unwrap_or(last), last)
+    }
+
+    fn remark_starts(&self, i: usize) -> bool {
+        let token = &self.tokens[i];
+        if token.kind == T::Text {
+            return true;
+        }
+        if token.kind == T::Comma {
+            let next = &self.tokens[i + 1];
+            let after = self.tokens.get(i + 2).map_or(T::End, |t| t.kind);
+            let word = next.kind == T::Word && next.text.chars().count() > 1;
+            return word && !matches!(after, T::Underscore | T::Comma) && !after.is_relation();
+        }
+        let wide = token.gap.has(Gap::WIDE) && !token.gap.has(Gap::NEWLINE);
+        wide && !token.kind.continues() && !self.tokens[i - 1].kind.continues()
+    }
+}

@@ -1,0 +1,184 @@
+//! Data lines, objectives and statements, and the labels at their ends.
+
+use super::{Parser, Read};
+use crate::diagnostic::syntax as message;
+use crate::lex::token::{Gap, Kind as T};
+use crate::place::Span;
+use crate::syntax::{Expression, Kind, Label, Line, NumberSet, Relation};
+
+impl Parser<'_> {
+    /// `c_{i,j} ≥ 0 ∀ (i,j) ∈ A`, `V`, `s, t ∈ V`.
+    pub(super) fn data_line(&mut self) -> Read<Line> {
+        let start = self.here();
+        let (left, links) = self.operands()?;
+        let clauses = self.clauses()?;
+        if self.peek() != T::End {
+            return Err(self.expected("a relation, a quantifier or two spaces before the remark"));
+        }
+        Ok(Line { left, links, clauses, label: None, remark: None, span: self.since(start) })
+    }
+
+    pub(super) fn objective(&mut self) -> Read<Expression> {
+        let _ = self.label();
+        let start = self.here();
+        let (mut left, mut links) = self.operands()?;
+        self.stray_punctuation();
+        if self.peek() != T::End {
+            return Err(self.expected("an operator or the end of the objective"));
+        }
+        // "min z = …" names the objective
+        if left.len() == 1 && links.len() == 1 && links[0].0 == Relation::Equal {
+            return Ok(links.remove(0).1);
+        }
+        match left.pop() {
+            Some(expression) if left.is_empty() && links.is_empty() => Ok(expression),
+            _ => {
+                let span = self.since(start);
+                Err(self.report(message::expected(
+                    span,
+                    "one linear expression",
+                    "a relation or a list",
+                )))
+            }
+        }
+    }
+
+    pub(super) fn statement(&mut self) -> Read<Line> {
+        let label = self.label();
+        let start = self.here();
+        let (left, links) = self.operands()?;
+        if links.is_empty() {
+            let at_end = matches!(self.peek(), T::End | T::ForAll);
+            let span = self.since(start);
+            return Err(if at_end {
+                self.report(message::no_relation(span))
+            } else {
+                self.expected("a relation such as ≤ or ∈")
+            });
+        }
+        let clauses = self.clauses()?;
+        self.stray_punctuation();
+        if self.peek() != T::End {
+            return Err(self.expected("an operator, a quantifier or the end of the line"));
+        }
+        let span = self.since(start);
+        let span = label.as_ref().map_or(span, |l| span.to(l.span));
+        Ok(Line { left, links, clauses, label, remark: None, span })
+    }
+
+    fn stray_punctuation(&mut self) {
+        while matches!(self.peek(), T::Comma | T::Period) {
+            self.bump();
+        }
+    }
+
+    /// Operands and relations up to the quantifier.
+    fn operands(&mut self) -> Read<(Vec<Expression>, Vec<(Relation, Expression)>)> {
+        let mut left = vec![self.range()?];
+        while self.peek() == T::Comma && !self.ahead(1).continues() && self.ahead(1) != T::End {
+            self.bump();
+            left.push(self.range()?);
+        }
+        let mut links = Vec::new();
+        loop {
+            let place = super::Surroundings { quad_ends: true, ..self.place };
+            let link = self.within(place, Self::link)?;
+            match link {
+                Some(link) => links.push(link),
+                None => return Ok((left, links)),
+            }
+        }
+    }
+
+    /// A relation with its right operand; `free` is `∈ ℝ`.
+    pub(super) fn link(&mut self) -> Read<Option<(Relation, Expression)>> {
+        let span = self.here();
+        if self.eat(T::Free) {
+            return Ok(Some((
+                Relation::In,
+                Expression { kind: Kind::NumberSet(NumberSet::Real), span },
+            )));
+        }
+        let Some(relation) = relation(self.peek()) else { return Ok(None) };
+        self.bump();
+        Ok(Some((relation, self.range()?)))
+    }
+
+    /// Takes the label off the end of the line.
+    fn label(&mut self) -> Option<Label> {
+        let tagged = self.tagged_label();
+        let written = self.bracketed_label();
+        tagged.or(written)
+    }
+
+    /// Moves the tags behind the end of the line; the last one is the label.
+    fn tagged_label(&mut self) -> Option<Label> {
+        let line = &mut self.tokens[self.at..self.end];
+        let tag = line.iter().rfind(|t| t.kind == T::Tag)?;
+        let label = Label { text: tag.text.clone(), span: tag.span };
+        line.sort_by_key(|t| t.kind == T::Tag);
+        self.end = self.at + line.iter().filter(|t| t.kind != T::Tag).count();
+        Some(label)
+    }
+
+    /// A final `(…)` after white space.
+    fn bracketed_label(&mut self) -> Option<Label> {
+        let mut last = self.end.checked_sub(1)?;
+        while last > self.at && matches!(self.tokens[last].kind, T::Comma | T::Period) {
+            last -= 1;
+        }
+        if last <= self.at || self.tokens[last].kind != T::RightParen {
+            return None;
+        }
+        let mut open = last;
+        while open > self.at && self.tokens[open].kind != T::LeftParen {
+            open -= 1;
+            if last - open > 12 {
+                return None;
+            }
+        }
+        let gap = self.tokens[open].gap;
+        if open == self.at || !gap.has(Gap::SPACE) {
+            return None;
+        }
+        let span = Span { start: self.tokens[open].span.start, end: self.tokens[last].span.end };
+        let text = span.of(self.text);
+        let inner = text[1..text.len() - 1].trim();
+        let set_off = gap.has(Gap::WIDE) || gap.has(Gap::NEWLINE) || gap.has(Gap::QUAD);
+        if !is_label(inner, set_off) {
+            return None;
+        }
+        self.end = open;
+        Some(Label { text: inner.to_owned(), span })
+    }
+}
+
+/// Words, numbers, spaces and hyphens; a single letter or a difference only where it is set off.
+fn is_label(inner: &str, set_off: bool) -> bool {
+    let plain = |c: char| c.is_alphanumeric() || " -'.’/:".contains(c);
+    if inner.is_empty() || !inner.chars().all(plain) || !inner.starts_with(char::is_alphanumeric) {
+        return false;
+    }
+    let number = inner.chars().all(|c| c.is_ascii_digit() || c == '.');
+    let difference = inner.split(['-', '/']).all(|piece| piece.trim().chars().count() < 2);
+    number
+        || (inner.contains(char::is_alphabetic)
+            && (set_off && !inner.contains(" - ") || !difference))
+}
+
+/// The relation that a token stands for.
+pub(super) fn relation(kind: T) -> Option<Relation> {
+    Some(match kind {
+        T::Equal | T::Congruent => Relation::Equal,
+        T::NotEqual => Relation::NotEqual,
+        T::Less => Relation::Less,
+        T::AtMost => Relation::AtMost,
+        T::Greater => Relation::Greater,
+        T::AtLeast => Relation::AtLeast,
+        T::In => Relation::In,
+        T::NotIn => Relation::NotIn,
+        T::Subset => Relation::Subset,
+        T::SubsetOrEqual => Relation::SubsetOrEqual,
+        _ => return None,
+    })
+}

@@ -1,0 +1,88 @@
+//! Names with their decorations, subscripts and superscripts.
+
+use super::{Parser, Read};
+use crate::lex::token::Kind as T;
+use crate::syntax::{Expression, Kind, Name};
+
+impl Parser<'_> {
+    /// A word, what hangs on it, and a bracket that touches it.
+    pub(super) fn name(&mut self) -> Read<Expression> {
+        let start = self.here();
+        let mut name = Name {
+            text: self.tokens[self.at].text.clone(),
+            indices: Vec::new(),
+            superscript: None,
+        };
+        self.bump();
+        loop {
+            let before = self.at;
+            if self.peek() == T::Underscore && name.indices.is_empty() {
+                self.bump();
+                self.subscript(&mut name)?;
+            } else if self.peek() == T::Caret && name.superscript.is_none() {
+                self.bump();
+                self.superscript(&mut name)?;
+            } else {
+                break;
+            }
+            debug_assert!(self.at > before, "a decoration must move on");
+        }
+        let touches = self.gap() == crate::lex::token::Gap::default();
+        if self.peek() == T::LeftParen
+            && touches
+            && name.indices.is_empty()
+            && name.superscript.is_none()
+        {
+            self.bump();
+            let inner = self.bracketed(T::RightParen, "“)”")?;
+            return Ok(self.make(Kind::Call(name, inner), start));
+        }
+        Ok(self.make(Kind::Name(name), start))
+    }
+
+    fn subscript(&mut self, name: &mut Name) -> Read<()> {
+        if let Some(decoration) = self.decoration() {
+            name.text.push('_');
+            name.text.push_str(&decoration);
+            return Ok(());
+        }
+        name.indices = self.grouped(Self::items)?;
+        Ok(())
+    }
+
+    fn superscript(&mut self, name: &mut Name) -> Read<()> {
+        if let Some(decoration) = self.decoration() {
+            name.text.push('^');
+            name.text.push_str(&decoration);
+            return Ok(());
+        }
+        name.superscript = Some(Box::new(self.grouped(Self::additive)?));
+        Ok(())
+    }
+
+    /// What belongs to a name: `\max`, `\text{in}`, `+`, alone in the group.
+    fn decoration(&mut self) -> Option<String> {
+        let braced = usize::from(self.peek() == T::LeftBrace);
+        if braced == 1 && self.ahead(2) != T::RightBrace {
+            return None;
+        }
+        let text = match self.ahead(braced) {
+            T::Max => "{\\max}".to_owned(),
+            T::Min => "{\\min}".to_owned(),
+            T::Plus => "+".to_owned(),
+            T::Minus => "-".to_owned(),
+            T::Dot => "*".to_owned(),
+            T::Text => format!("{{\\text{{{}}}}}", self.tokens[self.at + braced].text),
+            _ => return None,
+        };
+        self.at += 1 + 2 * braced;
+        Some(text)
+    }
+
+    /// A list of expressions up to a closing bracket.
+    pub(super) fn bracketed(&mut self, close: T, wanted: &str) -> Read<Vec<Expression>> {
+        let items = self.within(super::Surroundings::default(), |p| p.nested(Self::items))?;
+        self.expect(close, wanted)?;
+        Ok(items)
+    }
+}

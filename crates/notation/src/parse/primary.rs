@@ -1,0 +1,212 @@
+//! What an expression is made of: numbers, names, brackets, sets, sums, functions.
+
+use super::number::number;
+use super::{Parser, Read, Surroundings};
+use crate::diagnostic::syntax as message;
+use crate::lex::token::Kind as T;
+use crate::syntax::{Big, Expression, Function, Kind, Multiplicative, NumberSet};
+
+impl Parser<'_> {
+    pub(super) fn primary(&mut self) -> Read<Expression> {
+        let start = self.here();
+        match self.peek() {
+            T::Number => self.number(),
+            T::Word => self.name(),
+            T::LeftParen => self.parenthesis(),
+            T::LeftBrace => self.braces(),
+            T::LeftBracket => self.interval(),
+            T::Bar => self.bars(),
+            T::LeftFloor => self.between(Function::Floor, T::RightFloor, "“⌋”"),
+            T::LeftCeiling => self.between(Function::Ceiling, T::RightCeiling, "“⌉”"),
+            T::Floor => self.function(Function::Floor),
+            T::Ceiling => self.function(Function::Ceiling),
+            T::Min if self.ahead(1) != T::Underscore => self.function(Function::Minimum),
+            T::Max if self.ahead(1) != T::Underscore => self.function(Function::Maximum),
+            T::Min => self.big(Big::Least),
+            T::Max => self.big(Big::Greatest),
+            T::Sum => self.big(Big::Sum),
+            T::Product => self.big(Big::Product),
+            T::Fraction => self.fraction(),
+            T::EmptySet => {
+                self.bump();
+                Ok(self.make(Kind::EmptySet, start))
+            }
+            T::Infinity => {
+                self.bump();
+                Ok(self.make(Kind::Infinity, start))
+            }
+            T::Naturals | T::Integers | T::Reals | T::Binaries => self.number_set(),
+            _ => Err(self.expected("an expression")),
+        }
+    }
+
+    fn number(&mut self) -> Read<Expression> {
+        let token = &self.tokens[self.at];
+        let span = token.span;
+        let text = if token.text.is_empty() { span.of(self.text) } else { &token.text };
+        let Some(value) = number(text) else {
+            return Err(self.report(message::number_too_long(span)));
+        };
+        self.bump();
+        Ok(Expression { kind: Kind::Number(value), span })
+    }
+
+    fn parenthesis(&mut self) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        let mut items = self.bracketed(T::RightParen, "“)”")?;
+        Ok(match items.len() {
+            1 => Expression { span: self.since(start), ..items.remove(0) },
+            _ => self.make(Kind::Tuple(items), start),
+        })
+    }
+
+    /// `{a, b}`, `{a..b}`, `{i ∈ V : cond}`.
+    fn braces(&mut self) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        if self.eat(T::RightBrace) {
+            return Ok(self.make(Kind::EmptySet, start));
+        }
+        let place = Surroundings { bar_separates: true, ..Surroundings::default() };
+        let clause = self.within(place, |p| p.nested(Self::clause))?;
+        self.expect(T::RightBrace, "“}”")?;
+        let mut items = clause.items;
+        if !clause.such_that.is_empty() {
+            if items.len() != 1 {
+                return Err(self.report(message::expected(
+                    clause.span,
+                    "one member before the colon",
+                    "several",
+                )));
+            }
+            let kind = Kind::Builder(Box::new(items.remove(0)), clause.such_that);
+            return Ok(self.make(kind, start));
+        }
+        if items.len() == 1 && matches!(items[0].kind, Kind::Range(..)) {
+            return Ok(Expression { span: self.since(start), ..items.remove(0) });
+        }
+        Ok(self.make(Kind::Set(items), start))
+    }
+
+    fn interval(&mut self) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        let mut ends = self.bracketed(T::RightBracket, "“]”")?;
+        match (ends.pop(), ends.pop(), ends.is_empty()) {
+            (Some(b), Some(a), true) => {
+                Ok(self.make(Kind::Interval(Box::new(a), Box::new(b)), start))
+            }
+            (Some(only), None, true) => Ok(Expression { span: self.since(start), ..only }),
+            _ => {
+                let span = self.since(start);
+                Err(self.report(message::expected(span, "two ends of an interval", "more")))
+            }
+        }
+    }
+
+    fn bars(&mut self) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        let place = Surroundings { bars: true, ..Surroundings::default() };
+        let inner = self.within(place, |p| p.nested(Self::additive))?;
+        self.expect(T::Bar, "“|”")?;
+        Ok(self.make(Kind::Function(Function::Bars, vec![inner]), start))
+    }
+
+    fn between(&mut self, function: Function, close: T, wanted: &str) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        let inner = self.within(Surroundings::default(), |p| p.nested(Self::additive))?;
+        self.expect(close, wanted)?;
+        Ok(self.make(Kind::Function(function, vec![inner]), start))
+    }
+
+    /// `max(a, b)`, `max{a, b}`, `floor(a)`.
+    fn function(&mut self, function: Function) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        let (close, wanted) = match self.peek() {
+            T::LeftParen => (T::RightParen, "“)”"),
+            T::LeftBrace => (T::RightBrace, "“}”"),
+            _ => return Err(self.expected("“(”")),
+        };
+        self.bump();
+        let items = self.bracketed(close, wanted)?;
+        let one = matches!(function, Function::Floor | Function::Ceiling);
+        if one && items.len() != 1 {
+            let span = self.since(start);
+            return Err(self.report(message::expected(span, "one number", "several")));
+        }
+        Ok(self.make(Kind::Function(function, items), start))
+    }
+
+    fn big(&mut self, big: Big) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        let clause = self.within(Surroundings::default(), |p| p.nested(Self::limits))?;
+        let body = self.nested(Self::product)?;
+        Ok(self.make(Kind::Big(big, clause, Box::new(body)), start))
+    }
+
+    fn fraction(&mut self) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        let over = self.grouped(Self::additive)?;
+        let under = self.grouped(Self::additive)?;
+        Ok(self
+            .make(Kind::Multiplicative(Box::new(over), vec![(Multiplicative::Over, under)]), start))
+    }
+
+    /// `ℝ`, `ℤ_+`, `ℤ_{≥0}`, `ℕ`.
+    fn number_set(&mut self) -> Read<Expression> {
+        let start = self.here();
+        let kind = self.peek();
+        self.bump();
+        let mut sign = None;
+        if matches!(self.peek(), T::Underscore | T::Caret) {
+            self.bump();
+            let end = self.end;
+            let from = self.at;
+            let braced = self.eat(T::LeftBrace);
+            let signs = [self.peek(), self.ahead(1)];
+            sign = Some(match signs {
+                [T::Plus, _] => T::Plus,
+                [T::AtLeast, T::Number] => T::AtLeast,
+                [T::Greater, T::Number] => T::Greater,
+                [T::Number, _] if kind == T::Naturals => T::Number,
+                _ => return Err(self.expected("“+”, “≥0” or “>0”")),
+            });
+            self.at += if matches!(sign, Some(T::AtLeast | T::Greater)) { 2 } else { 1 };
+            if braced {
+                self.expect(T::RightBrace, "“}”")?;
+            }
+            debug_assert!(self.at > from && self.at <= end);
+            let number = &self.tokens[self.at - 1 - usize::from(braced)];
+            let text =
+                if number.text.is_empty() { number.span.of(self.text) } else { &number.text };
+            if number.kind == T::Number && text != "0" {
+                return Err(self.expected("0 as the bound"));
+            }
+        }
+        let set = match (kind, sign) {
+            (T::Binaries, None) => NumberSet::Binary,
+            (T::Naturals, _) | (T::Integers, Some(T::Plus | T::AtLeast)) => {
+                NumberSet::IntegerNonNegative
+            }
+            (T::Integers, Some(T::Greater)) => NumberSet::IntegerPositive,
+            (T::Integers, _) => NumberSet::Integer,
+            (T::Reals, Some(T::Plus | T::AtLeast)) => NumberSet::RealNonNegative,
+            (T::Reals, None) => NumberSet::Real,
+            _ => {
+                let span = self.since(start);
+                return Err(self.report(message::expected(
+                    span,
+                    "a closed set of numbers",
+                    "an open one",
+                )));
+            }
+        };
+        Ok(self.make(Kind::NumberSet(set), start))
+    }
+}

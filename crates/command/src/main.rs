@@ -1,2 +1,55 @@
-//! Placeholder until the crate is written.
-fn main() {}
+//! `hullward`: rival formulations run natively by the same engine as the page.
+//!
+//! Results go to standard output, everything else to standard error. The exit status says how
+//! it went (see [`ending::Ending`]).
+
+mod clock;
+mod complain;
+mod digest;
+mod ending;
+mod help;
+mod list;
+mod options;
+mod progress;
+mod read;
+mod run;
+mod source;
+mod table;
+mod verify;
+
+use std::io::Write;
+use std::process::ExitCode;
+
+use ending::Ending;
+use options::Call;
+
+fn main() -> ExitCode {
+    let arguments: Vec<String> =
+        std::env::args_os().skip(1).map(|word| word.to_string_lossy().into_owned()).collect();
+    let (mut out, mut err) = (std::io::stdout().lock(), std::io::stderr());
+    let ended = match options::parse(&arguments) {
+        Ok(call) => carry_out(&call, &mut out, &mut err),
+        Err(message) => writeln!(err, "hullward: {message}").map(|()| Ending::Wrong),
+    };
+    let flushed = out.flush();
+    match ended.and_then(|ending| flushed.map(|()| ending)) {
+        Ok(ending) => ending.code(),
+        // Who reads our output has closed it (`hullward list | head`): nothing is wrong.
+        Err(error) if error.kind() == std::io::ErrorKind::BrokenPipe => Ending::Done.code(),
+        Err(error) => {
+            let _ = writeln!(err, "hullward: the output cannot be written: {error}");
+            Ending::Wrong.code()
+        }
+    }
+}
+
+fn carry_out(call: &Call, out: &mut dyn Write, err: &mut dyn Write) -> std::io::Result<Ending> {
+    match call {
+        Call::Help(topic) => write!(out, "{}", help::text(*topic)).map(|()| Ending::Done),
+        Call::Version => writeln!(out, "hullward {}", engine::VERSION).map(|()| Ending::Done),
+        Call::Run(options) => run::run(options, out, err),
+        Call::Read(file) => read::read(file, out, err),
+        Call::List(id) => list::list(id.as_deref(), out, err),
+        Call::Digest { file, slice } => digest::digest(file, *slice, out, err),
+    }
+}

@@ -1,1 +1,32 @@
-//! Request to reply in slices: all that a worker or the command drives.
+//! Request to reply in slices: all that a worker of the page or the command drives.
+//!
+//! | use | for |
+//! |---|---|
+//! | [`Worker`] | one lane: requests in, slices of work, replies out |
+//! | [`native::run_rival`] | the same worker driven to its end without a page |
+//! | [`log_digest`] | one line that two machines can compare |
+//! | [`prepare`] | the model of a rival, for checks |
+//!
+//! Nothing here reads a clock, and nothing runs long without [`Worker::advance`]. What comes
+//! out is the same for every slice size; replies that would only repeat how far the work is are
+//! merged until they are taken.
+
+mod digest;
+mod fault;
+mod lane;
+mod left_out;
+mod load;
+mod map;
+pub mod native;
+mod outbox;
+mod readings;
+mod warm;
+mod worker;
+
+pub use digest::log_digest;
+pub use left_out::left_out;
+pub use load::prepare;
+pub use worker::Worker;
+
+/// The version of the engine: it stands in saved logs, and beside saved results.
+pub const VERSION: &str = env!("CARGO_PKG_VERSION");

@@ -153,6 +153,17 @@ pub struct Stop {
     pub y: f64,
 }
 
+/// The code of a complaint that only tells what was assumed begins with this.
+pub const NOTE: &str = "note.";
+
+impl Complaint {
+    /// Whether it only tells what was assumed.
+    #[must_use]
+    pub fn is_note(&self) -> bool {
+        self.code.starts_with(NOTE)
+    }
+}
+
 /// A complaint about a text: what is wrong, where, and how to mend it.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Complaint {

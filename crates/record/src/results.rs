@@ -42,6 +42,9 @@ pub struct RivalResult {
     pub status: Status,
     /// Whether larger is better.
     pub maximise: bool,
+    /// Whether it is only a relaxation: bounded, not compared for its optimum.
+    #[serde(default)]
+    pub relaxation: bool,
     /// Written rows, not domain lines.
     pub rows: u32,
     /// Columns.
@@ -61,6 +64,9 @@ pub struct RivalResult {
     /// Why there is no result.
     #[serde(skip_serializing_if = "Option::is_none", default)]
     pub error: Option<ErrorReport>,
+    /// What was assumed because the instance does not say.
+    #[serde(skip_serializing_if = "Vec::is_empty", default)]
+    pub assumed: Vec<String>,
     /// What the scenario asks for and this version of the engine does not do, in words.
     #[serde(skip_serializing_if = "Vec::is_empty", default)]
     pub left_out: Vec<String>,
@@ -190,6 +196,7 @@ pub fn digest(results: &[RivalResult]) -> String {
             instance: String::new(),
             rival: String::new(),
             title: String::new(),
+            assumed: Vec::new(),
             left_out: Vec::new(),
             timing: None,
             ..result.clone()

@@ -1,0 +1,96 @@
+//! Help texts.
+
+/// What help is asked for.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Topic {
+    All,
+    Run,
+    Read,
+    List,
+    Digest,
+}
+
+impl Topic {
+    /// The topic of a subcommand.
+    pub(crate) fn of(subcommand: &str) -> Option<Self> {
+        Some(match subcommand {
+            "run" => Self::Run,
+            "read" => Self::Read,
+            "list" => Self::List,
+            "digest" => Self::Digest,
+            _ => return None,
+        })
+    }
+}
+
+/// The help text.
+pub(crate) fn text(topic: Topic) -> &'static str {
+    match topic {
+        Topic::All => ALL,
+        Topic::Run => RUN,
+        Topic::Read => READ,
+        Topic::List => LIST,
+        Topic::Digest => DIGEST,
+    }
+}
+
+const ALL: &str = "\
+hullward: rival integer formulations side by side on your own data.
+
+  hullward run FILE…      run the rivals of scenarios: bounds, trees, solutions
+  hullward read FILE      what is understood of an instance, with every complaint
+  hullward list [ID]      the shipped formulations, or the text of one
+  hullward digest FILE    one line a rival that two machines can compare
+  hullward help [CALL]    more on one of them
+  hullward --version      the version of the engine
+
+FILE is a file, - for standard input, or a link of the page (https://…#s1.…).
+
+Exit status: 0 done; 1 a limit stopped it (results are printed); 2 the input is
+wrong (the reasons, each with file:line:column, on standard error); 3 an internal
+check failed.
+";
+
+const RUN: &str = "\
+hullward run FILE… [--json] [--seconds S] [--rival LETTER] [--log FILE]
+
+Runs every rival of the scenarios, one after another, and prints a table.
+
+  --json          one JSON object a rival and line instead; times stand in an
+                  object of their own, so that results compare without them
+  --seconds S     stop each rival after S seconds (0: never) instead of what the
+                  scenario says; the clock never changes what is found
+  --rival LETTER  run only this rival
+  --log FILE      save the log of its search; the scenario must have one rival, or
+                  --rival must name it
+
+A rival that cannot be run does not keep the others from running.
+The bound is always in the direction of the objective. A gap is
+|incumbent - bound| / |incumbent|. What is called checked was checked in exact
+arithmetic.
+";
+
+const READ: &str = "\
+hullward read FILE
+
+Says what is understood of an instance (a table, points, a TSPLIB file, blocks) or
+of the instances of a scenario, and names each line that is not, with its mend.
+";
+
+const LIST: &str = "\
+hullward list [ID]
+
+Lists the shipped formulations with their citations; with an ID, such as
+atsp/labels, prints the text of that one, ready to be changed.
+";
+
+const DIGEST: &str = "\
+hullward digest FILE [--slice TICKS]
+
+Runs each rival of a scenario on its first instance and prints its letter, the
+number of events of its search and the digest of their bytes. The line is the same
+on every machine and for every size of slice; no clock stops it, only the
+scenario's limits of nodes and iterations.
+
+  --slice TICKS   non-zeros touched a slice (2000000 unless given)
+";

@@ -1,0 +1,173 @@
+//! The words of the command line.
+
+use record::file::nearest;
+
+use crate::help::Topic;
+
+/// What is asked for.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) enum Call {
+    Help(Topic),
+    Version,
+    Run(RunOptions),
+    Read(String),
+    List(Option<String>),
+    Digest { file: String, slice: u64 },
+}
+
+/// How `run` is asked for.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub(crate) struct RunOptions {
+    pub(crate) files: Vec<String>,
+    pub(crate) json: bool,
+    /// Seconds a rival in place of the scenario's; 0 is none.
+    pub(crate) seconds: Option<f64>,
+    /// The letter of the only rival to run.
+    pub(crate) rival: Option<String>,
+    /// Where the log is saved.
+    pub(crate) log: Option<String>,
+}
+
+const CALLS: [&str; 5] = ["run", "read", "list", "digest", "help"];
+
+/// The call, or what is wrong with the words.
+pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
+    let Some((call, rest)) = words.split_first() else {
+        return Ok(Call::Help(Topic::All));
+    };
+    if let Some(topic) = Topic::of(call).filter(|_| rest.iter().any(|word| is_help(word))) {
+        return Ok(Call::Help(topic));
+    }
+    match call.as_str() {
+        "--version" | "-V" => Ok(Call::Version),
+        "help" => {
+            Ok(Call::Help(rest.first().and_then(|word| Topic::of(word)).unwrap_or(Topic::All)))
+        }
+        word if is_help(word) => Ok(Call::Help(Topic::All)),
+        "run" => run(rest).map(Call::Run),
+        "read" => one(rest, "read").map(Call::Read),
+        "list" => list(rest),
+        "digest" => digest(rest),
+        other => Err(unknown("call", other, &CALLS)),
+    }
+}
+
+fn is_help(word: &str) -> bool {
+    word == "--help" || word == "-h"
+}
+
+fn unknown(what: &str, word: &str, known: &[&str]) -> String {
+    let hint = nearest(word, known).map(|near| format!("did you mean {near}? "));
+    format!("there is no {what} {word}: {}see hullward help", hint.unwrap_or_default())
+}
+
+fn run(words: &[String]) -> Result<RunOptions, String> {
+    let mut options = RunOptions::default();
+    let mut words = words.iter();
+    while let Some(word) = words.next() {
+        match word.as_str() {
+            "--json" => options.json = true,
+            "--seconds" => options.seconds = Some(seconds(value(word, words.next())?)?),
+            "--rival" => options.rival = Some(value(word, words.next())?.to_uppercase()),
+            "--log" => options.log = Some(value(word, words.next())?.to_owned()),
+            other if is_option(other) => {
+                let known = ["--json", "--seconds", "--rival", "--log"];
+                return Err(unknown("option", other, &known));
+            }
+            file => options.files.push(file.to_owned()),
+        }
+    }
+    if options.files.is_empty() {
+        return Err("run needs a scenario: hullward run FILE…".to_owned());
+    }
+    Ok(options)
+}
+
+fn list(words: &[String]) -> Result<Call, String> {
+    match words {
+        [] => Ok(Call::List(None)),
+        _ => one(words, "list").map(|id| Call::List(Some(id))),
+    }
+}
+
+fn digest(words: &[String]) -> Result<Call, String> {
+    let mut files = Vec::new();
+    let mut slice = engine::native::USUAL_SLICE;
+    let mut words = words.iter();
+    while let Some(word) = words.next() {
+        if word == "--slice" {
+            let ticks = value(word, words.next())?;
+            slice = ticks
+                .parse()
+                .ok()
+                .filter(|ticks| *ticks > 0)
+                .ok_or_else(|| format!("--slice needs a whole number over 0, not {ticks}"))?;
+        } else {
+            files.push(word.clone());
+        }
+    }
+    one(&files, "digest").map(|file| Call::Digest { file, slice })
+}
+
+/// The only word, which is no option.
+fn one(words: &[String], call: &str) -> Result<String, String> {
+    match words {
+        [word] if !is_option(word) => Ok(word.clone()),
+        [word] => Err(unknown("option", word, &["--help"])),
+        _ => Err(format!("{call} takes one name: see hullward help {call}")),
+    }
+}
+
+fn is_option(word: &str) -> bool {
+    word.starts_with('-') && word != "-"
+}
+
+fn value<'w>(option: &str, word: Option<&'w String>) -> Result<&'w str, String> {
+    word.map(String::as_str).ok_or_else(|| format!("{option} needs a value"))
+}
+
+fn seconds(word: &str) -> Result<f64, String> {
+    let seconds = word.parse::<f64>().ok().filter(|seconds| seconds.is_finite() && *seconds >= 0.0);
+    seconds.ok_or_else(|| format!("--seconds needs a number of seconds, not {word}"))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn call(line: &str) -> Result<Call, String> {
+        parse(&line.split_whitespace().map(str::to_owned).collect::<Vec<_>>())
+    }
+
+    #[test]
+    fn calls_are_understood() {
+        let options = RunOptions {
+            files: vec!["a.toml".to_owned(), "-".to_owned()],
+            json: true,
+            seconds: Some(1.5),
+            ..RunOptions::default()
+        };
+        assert_eq!(call("run a.toml --json - --seconds 1.5"), Ok(Call::Run(options)));
+        assert_eq!(call(""), Ok(Call::Help(Topic::All)));
+        assert_eq!(call("read --help"), Ok(Call::Help(Topic::Read)));
+        assert_eq!(call("list atsp/labels"), Ok(Call::List(Some("atsp/labels".to_owned()))));
+        let digest = Call::Digest { file: "a".to_owned(), slice: 99 };
+        assert_eq!(call("digest a --slice 99"), Ok(digest));
+    }
+
+    #[test]
+    fn wrong_words_come_with_the_nearest_right_one() {
+        assert!(call("rum a").expect_err("wrong").contains("did you mean run?"));
+        assert!(call("run a --jsn").expect_err("wrong").contains("did you mean --json?"));
+        for wrong in [
+            "run",
+            "run a --seconds",
+            "run a --seconds -1",
+            "read",
+            "read a b",
+            "digest a --slice 0",
+        ] {
+            assert!(call(wrong).is_err(), "{wrong}");
+        }
+    }
+}

@@ -1,0 +1,73 @@
+//! `hullward read`: what is understood of an instance.
+
+use std::io::{Result, Write};
+
+use record::file::{self, Origin};
+use record::message::{InstanceReport, Reply, Request};
+use record::scenario::InstanceText;
+
+use crate::complain::complain;
+use crate::ending::Ending;
+use crate::source::{self, Source};
+
+/// Reads the instances of a scenario, or a text that is an instance.
+pub(crate) fn read(word: &str, out: &mut dyn Write, err: &mut dyn Write) -> Result<Ending> {
+    let source = match source::load(word) {
+        Ok(source) => source,
+        Err(message) => return writeln!(err, "{message}").map(|()| Ending::Wrong),
+    };
+    if !file::looks_like_a_scenario(&source.text) {
+        let instance = InstanceText { text: source.text.clone(), ..InstanceText::default() };
+        return understand(&source, None, &instance, out, err);
+    }
+    let parsed = file::parse(&source.text);
+    complain(err, &source.name, None, &parsed.complaints)?;
+    let Some(scenario) = parsed.scenario else { return Ok(Ending::Wrong) };
+    if scenario.instance.is_none() {
+        writeln!(err, "{}: the scenario has no instance", source.name)?;
+        return Ok(Ending::Wrong);
+    }
+    let mut worst = Ending::Done;
+    for (instance, origin) in scenario.instances().zip(parsed.instance_origins) {
+        worst = worst.max(understand(&source, Some(origin), instance, out, err)?);
+    }
+    Ok(worst)
+}
+
+fn understand(
+    source: &Source,
+    origin: Option<Origin>,
+    instance: &InstanceText,
+    out: &mut dyn Write,
+    err: &mut dyn Write,
+) -> Result<Ending> {
+    let mut worker = engine::Worker::new();
+    worker.handle(Request::Read(instance.clone()));
+    while worker.advance(engine::native::USUAL_SLICE) {}
+    for envelope in worker.take() {
+        match envelope.reply {
+            Reply::InstanceRead(report) => {
+                describe(instance, &report, out)?;
+                complain(err, &source.name, origin, &report.complaints)?;
+                return Ok(if report.usable { Ending::Done } else { Ending::Wrong });
+            }
+            Reply::Failed(error) => writeln!(err, "{}: {error}", source.name)?,
+            _ => {}
+        }
+    }
+    Ok(Ending::Wrong)
+}
+
+fn describe(instance: &InstanceText, report: &InstanceReport, out: &mut dyn Write) -> Result<()> {
+    let titles = [instance.title.as_str(), report.title.as_str(), "instance"];
+    let title = titles.iter().find(|title| !title.is_empty()).unwrap_or(&"instance");
+    writeln!(out, "{title} (read as {})", report.reader)?;
+    for fact in &report.facts {
+        writeln!(out, "  {fact}")?;
+    }
+    let errors = report.complaints.iter().filter(|complaint| complaint.error).count();
+    if !report.usable {
+        writeln!(out, "  cannot be used: {errors} errors, listed with their places")?;
+    }
+    Ok(())
+}

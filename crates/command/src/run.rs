@@ -1,0 +1,204 @@
+//! `hullward run`: the rivals of scenarios, one after another.
+
+use std::io::{Result, Write};
+
+use engine::native::{Phase, RivalRun, USUAL_SLICE, Watch, result, run_rival};
+use record::event::Log;
+use record::file::{self, Parsed};
+use record::results::{RivalResult, Status, Timing};
+use record::scenario::{Scenario, letter};
+
+use crate::clock::Clock;
+use crate::complain::complain;
+use crate::ending::Ending;
+use crate::options::RunOptions;
+use crate::progress::Line;
+use crate::source::{self, Source};
+use crate::table;
+use crate::verify::verify;
+
+/// Runs every scenario; a wrong one does not keep the others from running.
+pub(crate) fn run(
+    options: &RunOptions,
+    out: &mut dyn Write,
+    err: &mut dyn Write,
+) -> Result<Ending> {
+    let mut worst = Ending::Done;
+    for word in &options.files {
+        let ending = match source::load(word) {
+            Ok(source) => Job { options, source }.run(out, err)?,
+            Err(message) => writeln!(err, "{message}").map(|()| Ending::Wrong)?,
+        };
+        worst = worst.max(ending);
+    }
+    Ok(worst)
+}
+
+/// One scenario to run.
+struct Job<'o> {
+    options: &'o RunOptions,
+    source: Source,
+}
+
+impl Job<'_> {
+    fn run(&self, out: &mut dyn Write, err: &mut dyn Write) -> Result<Ending> {
+        let mut parsed = file::parse(&self.source.text);
+        complain(err, &self.source.name, None, &parsed.complaints)?;
+        let Some(mut scenario) = parsed.scenario.take() else { return Ok(Ending::Wrong) };
+        if let Some(seconds) = self.options.seconds {
+            scenario.run.seconds = seconds;
+        }
+        let chosen = match self.chosen(&scenario) {
+            Ok(chosen) => chosen,
+            Err(message) => {
+                writeln!(err, "{}: {message}", self.source.name)?;
+                return Ok(Ending::Wrong);
+            }
+        };
+        let mut ending = Ending::Done;
+        let mut results = Vec::new();
+        for instance in 0..scenario.instances().count().max(1) {
+            for &rival in &chosen {
+                let (one, ended) = self.rival(&scenario, &parsed, (instance, rival), err)?;
+                ending = ending.max(ended);
+                if self.options.json {
+                    serde_json::to_writer(&mut *out, &one)?;
+                    writeln!(out)?;
+                    out.flush()?;
+                }
+                results.push(one);
+            }
+        }
+        if !self.options.json {
+            let whole = self.options.rival.is_none();
+            table::print(&scenario, &results, whole, out)?;
+        }
+        self.left_out(&scenario, err)?;
+        Ok(ending)
+    }
+
+    /// The places of the rivals to run.
+    fn chosen(&self, scenario: &Scenario) -> std::result::Result<Vec<usize>, String> {
+        let count = scenario.rivals.len();
+        let all = (0..count).filter(|&rival| {
+            self.options.rival.as_ref().is_none_or(|wanted| *wanted == letter(rival))
+        });
+        let chosen: Vec<usize> = all.collect();
+        if chosen.is_empty() {
+            return Err(match &self.options.rival {
+                Some(wanted) => format!("there is no rival {wanted}: it has {count}"),
+                None => "the scenario has no rival: add [[rival]]".to_owned(),
+            });
+        }
+        if self.options.log.is_some()
+            && (chosen.len() > 1 || !scenario.further_instances.is_empty())
+        {
+            return Err("--log saves one log: name the rival with --rival".to_owned());
+        }
+        Ok(chosen)
+    }
+
+    fn rival(
+        &self,
+        scenario: &Scenario,
+        parsed: &Parsed,
+        place: (usize, usize),
+        err: &mut dyn Write,
+    ) -> Result<(RivalResult, Ending)> {
+        let (run, timing) = timed(scenario, place);
+        let mut one = result(scenario, place, &run);
+        one.timing = Some(timing);
+        if run.stopped {
+            say_the_time(&mut one, scenario.run.seconds);
+        }
+        self.complain_of(&one, &run, (scenario, parsed, place), err)?;
+        if let Some(path) = &self.options.log {
+            save(path, run)?;
+        }
+        if let Some(fault) = verify(&one) {
+            writeln!(err, "{}: an internal check failed: {fault}", self.source.name)?;
+            return Ok((one, Ending::Broken));
+        }
+        let ending = ending(&one);
+        Ok((one, ending))
+    }
+
+    /// What is wrong with a rival, and what notation warns of, at its place in the file or in
+    /// the shipped text.
+    fn complain_of(
+        &self,
+        one: &RivalResult,
+        run: &RivalRun,
+        (scenario, parsed, (instance, rival)): (&Scenario, &Parsed, (usize, usize)),
+        err: &mut dyn Write,
+    ) -> Result<()> {
+        let name = &self.source.name;
+        let origin = parsed.rival_origins.get(rival).copied().flatten();
+        let from = scenario.rivals.get(rival).and_then(|rival| rival.from.as_ref());
+        let of_rival = from.unwrap_or(name);
+        if let Some(report) = &run.report {
+            complain(err, of_rival, origin, &report.complaints)?;
+        }
+        let Some(error) = &one.error else { return Ok(()) };
+        if error.place == "instance" {
+            let origin = parsed.instance_origins.get(instance).copied();
+            complain(err, name, origin, &error.complaints)?;
+        } else {
+            complain(err, of_rival, origin, &error.complaints)?;
+        }
+        writeln!(err, "{name}: rival {} could not be run: {}", one.rival, error.message)
+    }
+
+    fn left_out(&self, scenario: &Scenario, err: &mut dyn Write) -> Result<()> {
+        let kinds: Vec<&str> = scenario.studies.iter().map(|study| study.kind.as_str()).collect();
+        if kinds.is_empty() {
+            return Ok(());
+        }
+        let (name, kinds) = (&self.source.name, kinds.join(", "));
+        writeln!(err, "{name}: studies are not in this version; left out: {kinds}")
+    }
+}
+
+/// Runs one rival with a look at the clock between slices.
+fn timed(scenario: &Scenario, place: (usize, usize)) -> (RivalRun, Timing) {
+    let clock = Clock::start();
+    let mut root_ms = None;
+    let mut line = Line::new();
+    let run = run_rival(scenario, place, USUAL_SLICE, &mut |moment| {
+        if moment.phase == Phase::Search && root_ms.is_none() {
+            root_ms = Some(clock.milliseconds());
+        }
+        line.show(&letter(place.1), &moment, &clock);
+        if clock.is_over(scenario.run.seconds) { Watch::Stop } else { Watch::GoOn }
+    });
+    line.wipe();
+    let all = clock.milliseconds();
+    let root_ms = root_ms.unwrap_or(all);
+    let searched = run.search.is_some();
+    (run, Timing { root_ms, search_ms: if searched { all - root_ms } else { 0.0 } })
+}
+
+/// The clock stopped it: says so, and how others see the same tree.
+fn say_the_time(one: &mut RivalResult, seconds: f64) {
+    if let Some(search) = &mut one.search {
+        let nodes = search.nodes;
+        let why = format!("the time limit of {seconds} s; nodes = {nodes} gives the same tree");
+        search.stopped = Some(why);
+    } else if let Some(root) = &mut one.root {
+        root.stopped = Some(format!("the time limit of {seconds} s"));
+    }
+}
+
+fn ending(one: &RivalResult) -> Ending {
+    match one.status {
+        Status::Error => Ending::Wrong,
+        Status::Limit => Ending::Limit,
+        Status::Optimal | Status::Infeasible | Status::Unbounded => Ending::Done,
+    }
+}
+
+fn save(path: &str, run: RivalRun) -> Result<()> {
+    let log = Log { version: 1, engine: engine::VERSION.to_owned(), events: run.events };
+    let bytes = record::log::encode(&log).map_err(std::io::Error::other)?;
+    std::fs::write(path, bytes)
+}

@@ -1,0 +1,175 @@
+//! The results of a scenario for people.
+
+use std::collections::BTreeSet;
+use std::io::{Result, Write};
+
+use record::results::{self, RivalResult, SearchReport, Status};
+use record::scenario::Scenario;
+use report::number::{count, percent, short};
+
+/// Stands under every table.
+const CAUTION: &str = "\
+A plan that comes out of a model is a decision aid; driving, working-time, energy and
+safety rules of the place, and the people licensed to apply them, come first.";
+
+/// The columns by their heading.
+const HEADINGS: [&str; 11] = [
+    "",
+    "rival",
+    "rows",
+    "columns",
+    "root bound",
+    "root gap",
+    "bound",
+    "incumbent",
+    "gap",
+    "nodes",
+    "status",
+];
+
+/// The columns that are words, not numbers.
+const WORDS: [usize; 3] = [0, 1, 10];
+
+/// Prints the table; `whole` says that every rival was run, so that the digest counts.
+pub(crate) fn print(
+    scenario: &Scenario,
+    results: &[RivalResult],
+    whole: bool,
+    out: &mut dyn Write,
+) -> Result<()> {
+    let title = if scenario.title.is_empty() { "scenario" } else { &scenario.title };
+    writeln!(out, "{title}")?;
+    let mut instance = "";
+    let mut group = Vec::new();
+    for one in results {
+        if one.instance != instance && !group.is_empty() {
+            rows(&group, instance, out)?;
+            group.clear();
+        }
+        instance = &one.instance;
+        group.push(one);
+    }
+    rows(&group, instance, out)?;
+    let assumed: BTreeSet<&str> =
+        results.iter().flat_map(|one| one.assumed.iter().map(String::as_str)).collect();
+    for sentence in assumed {
+        writeln!(out, "assumed: {sentence}")?;
+    }
+    for one in results {
+        for sentence in notes(one) {
+            writeln!(out, "{}: {sentence}", one.rival)?;
+        }
+    }
+    if whole {
+        compare(scenario, results, out)?;
+    }
+    writeln!(out, "\n{CAUTION}")
+}
+
+/// One table: the rivals on one instance.
+fn rows(group: &[&RivalResult], instance: &str, out: &mut dyn Write) -> Result<()> {
+    writeln!(out, "{}{instance}", if instance.is_empty() { "" } else { "\n" })?;
+    let mut table: Vec<Vec<String>> = vec![HEADINGS.map(str::to_owned).to_vec()];
+    table.extend(group.iter().map(|one| cells(one)));
+    let widths: Vec<usize> = (0..HEADINGS.len())
+        .map(|column| table.iter().map(|row| row[column].chars().count()).max().unwrap_or(0))
+        .collect();
+    for row in &table {
+        let padded = row.iter().zip(&widths).enumerate().map(|(column, (cell, &width))| {
+            if WORDS.contains(&column) {
+                format!("{cell:<width$}")
+            } else {
+                format!("{cell:>width$}")
+            }
+        });
+        writeln!(out, "{}", padded.collect::<Vec<_>>().join("  ").trim_end())?;
+    }
+    Ok(())
+}
+
+fn cells(one: &RivalResult) -> Vec<String> {
+    let root = one.root.as_ref();
+    let search = one.search.as_ref();
+    let bound = root.and_then(|root| root.bound);
+    let incumbent = search.and_then(|search| search.incumbent);
+    let size = |value: u64| if one.columns == 0 { String::new() } else { count(value) };
+    let number = |value: Option<f64>| value.map_or_else(|| "–".to_owned(), short);
+    let root_checked = if root.is_some_and(|root| root.checked) { " ✓" } else { "" };
+    vec![
+        one.rival.clone(),
+        one.title.clone(),
+        size(u64::from(one.rows)),
+        size(u64::from(one.columns)),
+        format!("{}{root_checked}", number(bound)),
+        gap(incumbent, bound),
+        number(search.and_then(|search| search.bound)),
+        number(incumbent),
+        search.and_then(|search| search.gap).map_or_else(|| "–".to_owned(), percent),
+        search.map_or_else(|| "–".to_owned(), |search| count(u64::from(search.nodes))),
+        status(one),
+    ]
+}
+
+/// |incumbent − bound| / |incumbent| as a percentage.
+fn gap(incumbent: Option<f64>, bound: Option<f64>) -> String {
+    match (incumbent, bound) {
+        (Some(incumbent), Some(bound)) if incumbent != 0.0 => {
+            percent((incumbent - bound).abs() / incumbent.abs())
+        }
+        _ => "–".to_owned(),
+    }
+}
+
+fn status(one: &RivalResult) -> String {
+    let word = match one.status {
+        Status::Optimal if one.relaxation => "relaxation solved",
+        Status::Optimal if one.search.is_none() => "root solved",
+        Status::Optimal => "optimal",
+        Status::Infeasible => "infeasible",
+        Status::Unbounded => "unbounded",
+        Status::Limit => "stopped by a limit",
+        Status::Error => "could not be run",
+    };
+    match &one.search {
+        Some(SearchReport { checked: true, .. }) => format!("{word} ✓"),
+        _ => word.to_owned(),
+    }
+}
+
+/// What a reader must know beside the numbers.
+fn notes(one: &RivalResult) -> Vec<String> {
+    let mut notes = one.left_out.clone();
+    let stopped = one.search.as_ref().and_then(|search| search.stopped.clone());
+    let stopped = stopped.or(one.root.as_ref().and_then(|root| root.stopped.clone()));
+    notes.extend(stopped.map(|why| format!("stopped by {why}")));
+    notes.extend(one.error.as_ref().map(|error| error.message.clone()));
+    if let Some(root) = &one.root
+        && let (Some(exact), true) = (&root.checked_bound, root.checked)
+        && exact.contains('/')
+        && exact.len() <= 40
+    {
+        notes.push(format!("root bound proved: {exact}"));
+    }
+    let separated = one.families.iter().filter(|family| !family.separation.is_empty());
+    notes.extend(separated.map(|family| {
+        format!(
+            "{} on demand by {}, {} rows added at the root",
+            family.name, family.separation, family.added
+        )
+    }));
+    notes
+}
+
+/// Says whether the results are those that were saved with the scenario.
+fn compare(scenario: &Scenario, results: &[RivalResult], out: &mut dyn Write) -> Result<()> {
+    let Some(saved) = &scenario.digest else { return Ok(()) };
+    if *saved == results::digest(results) {
+        return writeln!(out, "The results are the same as those saved with the scenario.");
+    }
+    let engine = scenario.engine.as_deref().unwrap_or("of unknown version");
+    writeln!(
+        out,
+        "The results differ from those saved with the scenario (engine {engine}; this is {}).",
+        engine::VERSION
+    )
+}

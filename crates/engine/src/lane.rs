@@ -1,0 +1,237 @@
+//! One rival from its text to the end of its search.
+//!
+//! ```text
+//! Begin → Expanding → Root → Waiting ⇄ Running → Over
+//! ```
+//!
+//! A request that comes too early waits: "run" before the root is solved is remembered.
+
+use std::rc::Rc;
+
+use model::Model;
+use record::message::{LaneJob, Progress, Reply, Request};
+use record::results::ErrorReport;
+use tree::{NodeId, Search};
+
+use crate::fault::fault;
+use crate::load::{Loaded, Loading};
+use crate::map::{self, Stops};
+use crate::outbox::Outbox;
+use crate::readings::Readings;
+
+/// A word on how far the work is comes at most once in so many non-zeros touched.
+const PROGRESS_EVERY: u64 = 1 << 20;
+
+/// How far a lane is.
+#[derive(Debug)]
+enum Stage {
+    Begin,
+    Expanding(Box<Loading>),
+    Root(Box<Solver>),
+    Waiting(Box<Solver>),
+    Running(Box<Solver>),
+    Over(Option<Box<Solver>>),
+}
+
+/// A search with what its replies need.
+#[derive(Debug)]
+struct Solver {
+    model: Rc<Model>,
+    stops: Stops,
+    search: Search,
+    told: u64,
+}
+
+/// A rival that is loaded.
+#[derive(Debug)]
+pub(crate) struct Lane {
+    job: LaneJob,
+    stage: Stage,
+    /// A run that was asked for before the root was solved.
+    asked: Option<Option<u32>>,
+}
+
+impl Lane {
+    /// A lane that has not begun.
+    pub(crate) fn new(job: LaneJob) -> Self {
+        Self { job, stage: Stage::Begin, asked: None }
+    }
+
+    /// Whether [`Self::advance`] has something to do.
+    pub(crate) fn is_busy(&self) -> bool {
+        !matches!(self.stage, Stage::Waiting(_) | Stage::Over(_))
+    }
+
+    /// Works for about `ticks`.
+    pub(crate) fn advance(&mut self, ticks: u64, readings: &mut Readings, outbox: &mut Outbox) {
+        let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
+        self.stage = match stage {
+            Stage::Begin => match Loading::begin(readings, &self.job) {
+                Ok(loading) => Stage::Expanding(Box::new(loading)),
+                Err(error) => self.fail(error, outbox),
+            },
+            Stage::Expanding(loading) => self.expand(loading, ticks, outbox),
+            Stage::Root(solver) => self.solve(solver, ticks, outbox, Stage::Root),
+            Stage::Running(solver) => self.solve(solver, ticks, outbox, Stage::Running),
+            resting => resting,
+        };
+    }
+
+    /// Carries out a request about this rival.
+    pub(crate) fn act(&mut self, request: &Request, outbox: &mut Outbox) {
+        match request {
+            Request::Run { nodes } => self.run(*nodes),
+            Request::Pause => self.pause(outbox),
+            Request::Stop => self.stop(outbox),
+            Request::Inspect(node) => self.inspect(NodeId(node.0), outbox),
+            _ => {}
+        }
+    }
+
+    fn expand(&mut self, mut loading: Box<Loading>, ticks: u64, outbox: &mut Outbox) -> Stage {
+        if loading.advance(ticks) {
+            let doing = "writing the rows".to_owned();
+            let progress = Progress { doing, ticks: 0, iterations: 0 };
+            outbox.push(self.job.run, Reply::Progress(progress));
+            return Stage::Expanding(loading);
+        }
+        let Loaded { title, model, complaints, stops } = match loading.finish() {
+            Ok(loaded) => loaded,
+            Err(error) => return self.fail(error, outbox),
+        };
+        let report = map::rival_report(&model, &title, complaints);
+        outbox.push(self.job.run, Reply::Understood(Box::new(report)));
+        let settings = map::settings(&self.job.settings, self.job.seed);
+        let search = Search::new(Rc::clone(&model), settings);
+        let stops = Stops::new(&model, &stops);
+        Stage::Root(Box::new(Solver { model, stops, search, told: 0 }))
+    }
+
+    fn solve(
+        &mut self,
+        mut solver: Box<Solver>,
+        ticks: u64,
+        outbox: &mut Outbox,
+        same: fn(Box<Solver>) -> Stage,
+    ) -> Stage {
+        let progress = solver.search.advance(ticks);
+        self.tell(&mut solver, outbox);
+        match progress {
+            tree::Progress::Working => same(solver),
+            tree::Progress::RootSolved => {
+                self.tell_root(&solver, outbox);
+                self.rest(solver)
+            }
+            tree::Progress::Paused => {
+                let report = map::search_report(&solver.model, &solver.search);
+                outbox.push(self.job.run, Reply::Paused(Box::new(report)));
+                Stage::Waiting(solver)
+            }
+            tree::Progress::Finished => self.end(solver, outbox),
+        }
+    }
+
+    /// After the root: on when that was asked for, else wait.
+    fn rest(&mut self, mut solver: Box<Solver>) -> Stage {
+        match self.asked.take() {
+            Some(nodes) => {
+                solver.search.run(nodes);
+                Stage::Running(solver)
+            }
+            None => Stage::Waiting(solver),
+        }
+    }
+
+    fn end(&mut self, solver: Box<Solver>, outbox: &mut Outbox) -> Stage {
+        let report = map::search_report(&solver.model, &solver.search);
+        outbox.push(self.job.run, Reply::Done(Box::new(report)));
+        Stage::Over(Some(solver))
+    }
+
+    fn fail(&mut self, error: ErrorReport, outbox: &mut Outbox) -> Stage {
+        outbox.push(self.job.run, Reply::Failed(error));
+        Stage::Over(None)
+    }
+
+    fn tell_root(&self, solver: &Solver, outbox: &mut Outbox) {
+        if let Some(root) = solver.search.root() {
+            let report = map::root_report(root);
+            outbox.push(self.job.run, Reply::Root(Box::new(report)));
+        }
+    }
+
+    /// Sends what happened, and now and then how far the work is.
+    fn tell(&self, solver: &mut Solver, outbox: &mut Outbox) {
+        let events: Vec<_> = solver.search.take_events().into_iter().map(map::event).collect();
+        if !events.is_empty() {
+            outbox.push(self.job.run, Reply::Batch(events));
+        }
+        let work = solver.search.work();
+        if work.ticks >= solver.told.saturating_add(PROGRESS_EVERY) {
+            solver.told = work.ticks;
+            let doing = work.doing.to_owned();
+            let progress = Progress { doing, ticks: work.ticks, iterations: work.iterations };
+            outbox.push(self.job.run, Reply::Progress(progress));
+        }
+    }
+
+    fn run(&mut self, nodes: Option<u32>) {
+        let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
+        self.stage = match stage {
+            Stage::Waiting(mut solver) | Stage::Running(mut solver) => {
+                solver.search.run(nodes);
+                Stage::Running(solver)
+            }
+            over @ Stage::Over(_) => over,
+            earlier => {
+                self.asked = Some(nodes);
+                earlier
+            }
+        };
+    }
+
+    fn pause(&mut self, outbox: &mut Outbox) {
+        self.asked = None;
+        match &mut self.stage {
+            Stage::Running(solver) => solver.search.pause(),
+            Stage::Waiting(solver) => {
+                let report = map::search_report(&solver.model, &solver.search);
+                outbox.push(self.job.run, Reply::Paused(Box::new(report)));
+            }
+            _ => {}
+        }
+    }
+
+    fn stop(&mut self, outbox: &mut Outbox) {
+        self.asked = None;
+        let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
+        self.stage = match stage {
+            Stage::Root(mut solver) | Stage::Waiting(mut solver) | Stage::Running(mut solver) => {
+                solver.search.stop();
+                Stage::Running(solver)
+            }
+            Stage::Begin | Stage::Expanding(_) => {
+                self.fail(fault("rival", "stopped before its model was made"), outbox)
+            }
+            over @ Stage::Over(_) => over,
+        };
+    }
+
+    fn inspect(&mut self, node: NodeId, outbox: &mut Outbox) {
+        let (Stage::Root(solver)
+        | Stage::Waiting(solver)
+        | Stage::Running(solver)
+        | Stage::Over(Some(solver))) = &mut self.stage
+        else {
+            outbox.push(self.job.run, Reply::Failed(fault("rival", "there is no node yet")));
+            return;
+        };
+        let reply = match solver.search.inspect(node) {
+            Some(view) => {
+                Reply::Node(Box::new(map::node_detail(&solver.model, &solver.stops, &view)))
+            }
+            None => Reply::Failed(fault("rival", format!("node {} is not solved yet", node.0))),
+        };
+        outbox.push(self.job.run, reply);
+    }
+}

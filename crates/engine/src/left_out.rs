@@ -1,0 +1,68 @@
+//! What a scenario asks for and this version of the engine does not do: it is said, never
+//! silently ignored.
+
+use record::scenario::{BranchingRule, Rival, Run, Selection};
+
+/// What is left out when this rival is run, one sentence each; empty when nothing is.
+#[must_use]
+pub fn left_out(rival: &Rival, run: &Run) -> Vec<String> {
+    let mut sentences = Vec::new();
+    let branching = match run.branching {
+        BranchingRule::MostFractional | BranchingRule::Pseudocost => None,
+        BranchingRule::Strong => Some("strong branching"),
+        BranchingRule::Reliability => Some("reliability branching"),
+        BranchingRule::ByHand => Some("branching by hand"),
+    };
+    if let Some(rule) = branching {
+        sentences.push(format!("{rule} is not in this version; pseudocost was used"));
+    }
+    if run.selection == Selection::BestEstimate {
+        let rule = "selection by best estimate";
+        sentences.push(format!("{rule} is not in this version; best bound was used"));
+    }
+    let general: Vec<&str> = run
+        .cuts
+        .iter()
+        .flatten()
+        .map(String::as_str)
+        .filter(|class| *class != "on demand")
+        .collect();
+    if !general.is_empty() {
+        let classes = general.join(", ");
+        sentences.push(format!("general cuts ({classes}) are not in this version; none was used"));
+    }
+    if !rival.acts.is_empty() {
+        let count = rival.acts.len();
+        sentences.push(format!("acts by hand are not replayed by this version; {count} left out"));
+    }
+    sentences
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use record::scenario::{Act, ActKind};
+
+    #[test]
+    fn nothing_is_left_out_of_a_usual_run() {
+        assert!(left_out(&Rival::default(), &Run::default()).is_empty());
+        let on_demand = Run { cuts: Some(vec!["on demand".to_owned()]), ..Run::default() };
+        assert!(left_out(&Rival::default(), &on_demand).is_empty());
+    }
+
+    #[test]
+    fn each_thing_left_out_is_named() {
+        let act = Act { after: 1, what: ActKind::Close, node: Some(2), on: Vec::new() };
+        let rival = Rival { acts: vec![act], ..Rival::default() };
+        let run = Run {
+            branching: BranchingRule::Reliability,
+            selection: Selection::BestEstimate,
+            cuts: Some(vec!["on demand".to_owned(), "mir".to_owned()]),
+            ..Run::default()
+        };
+        let sentences = left_out(&rival, &run);
+        assert_eq!(sentences.len(), 4);
+        assert!(sentences[0].starts_with("reliability branching"));
+        assert!(sentences[2].contains("(mir)"));
+    }
+}

@@ -1,0 +1,162 @@
+//! From a rival's text and an instance's text to the model: read, parse, check, bind, and
+//! expansion in slices.
+
+use std::collections::BTreeMap;
+use std::rc::Rc;
+
+use instance::Reading;
+use model::{FamilyState, Model};
+use notation::{Diagnostic, Expansion, Limits};
+use record::message::LaneJob;
+use record::results::ErrorReport;
+use record::scenario::{Rival, Scenario};
+
+use crate::fault::{fault, unknown};
+use crate::map::{of_diagnostic, of_instance};
+use crate::readings::Readings;
+
+/// A rival that is being expanded.
+#[derive(Debug)]
+pub(crate) struct Loading {
+    title: String,
+    text: String,
+    warnings: Vec<Diagnostic>,
+    expansion: Expansion,
+    reading: Rc<Reading>,
+    wanted: BTreeMap<String, record::scenario::FamilyState>,
+}
+
+/// A rival that is expanded.
+#[derive(Debug)]
+pub(crate) struct Loaded {
+    /// Its title.
+    pub(crate) title: String,
+    /// Its model.
+    pub(crate) model: Rc<Model>,
+    /// What notation warns of.
+    pub(crate) complaints: Vec<record::message::Complaint>,
+    /// The instance's stops.
+    pub(crate) stops: Vec<String>,
+}
+
+impl Loading {
+    /// Reads, parses, checks and binds.
+    ///
+    /// # Errors
+    /// What cannot be read, with its places in the text that it is in.
+    pub(crate) fn begin(readings: &mut Readings, job: &LaneJob) -> Result<Self, ErrorReport> {
+        let (text, title) = formulation(&job.rival)?;
+        let Some(given) = &job.instance else {
+            return Err(fault("scenario", "the scenario has no instance"));
+        };
+        let reading = readings.read(given)?;
+        let Some(instance) = &reading.instance else {
+            return Err(unreadable(&given.text, &reading));
+        };
+        let parse = notation::parse(&text);
+        let (checked, mut found) = notation::check(&parse.tree);
+        found.splice(0..0, parse.diagnostics);
+        if found.iter().any(Diagnostic::is_error) {
+            return Err(not_a_model(&text, &found));
+        }
+        let bound = notation::bind(&checked, instance, &given.bind)
+            .map_err(|wrong| not_a_model(&text, &[found.clone(), wrong].concat()))?;
+        let states = states(&job.rival);
+        let expansion = Expansion::new(bound, &states, Limits::default());
+        let wanted = job.rival.families.clone();
+        Ok(Self { title, text, warnings: found, expansion, reading, wanted })
+    }
+
+    /// Expands for about `ticks`; whether there is more to do.
+    pub(crate) fn advance(&mut self, ticks: u64) -> bool {
+        self.expansion.advance(ticks) == notation::Progress::Working
+    }
+
+    /// The model.
+    ///
+    /// # Errors
+    /// Rows that cannot be made, and families that were asked for and are not there.
+    pub(crate) fn finish(self) -> Result<Loaded, ErrorReport> {
+        let Self { title, text, mut warnings, expansion, reading, wanted } = self;
+        let (model, further) = expansion
+            .finish()
+            .map_err(|wrong| not_a_model(&text, &[warnings.clone(), wrong].concat()))?;
+        warnings.extend(further);
+        let known: Vec<&str> = model.families().iter().map(|family| family.name.as_str()).collect();
+        for name in wanted.keys() {
+            if !known.contains(&name.as_str()) {
+                return Err(unknown("rival", "constraint family", name, &known));
+            }
+        }
+        let title = if title.is_empty() { model.title().to_owned() } else { title };
+        Ok(Loaded {
+            title,
+            complaints: warnings.iter().map(|found| of_diagnostic(&text, found)).collect(),
+            stops: reading.instance.as_ref().map_or_else(Vec::new, |i| i.stops().to_vec()),
+            model: Rc::new(model),
+        })
+    }
+}
+
+/// The model of a rival on the scenario's first instance, all at once.
+///
+/// # Errors
+/// As the replies of a worker give them.
+pub fn prepare(scenario: &Scenario, rival: usize) -> Result<Rc<Model>, ErrorReport> {
+    let Some(rival) = scenario.rivals.get(rival) else {
+        return Err(fault("scenario", "the scenario has no such rival"));
+    };
+    let job =
+        LaneJob { instance: scenario.instance.clone(), rival: rival.clone(), ..LaneJob::default() };
+    let mut loading = Loading::begin(&mut Readings::default(), &job)?;
+    while loading.advance(1_000_000) {}
+    loading.finish().map(|loaded| loaded.model)
+}
+
+/// The notation text of a rival and the title given to it.
+fn formulation(rival: &Rival) -> Result<(String, String), ErrorReport> {
+    match (&rival.from, &rival.text, &rival.mps) {
+        (Some(id), None, None) => match catalogue::find(id) {
+            Some(entry) => Ok((entry.text.to_owned(), rival.title.clone())),
+            None => {
+                let entries = catalogue::entries();
+                let known: Vec<&str> = entries.iter().map(|entry| entry.id.as_str()).collect();
+                Err(unknown("scenario", "formulation", id, &known))
+            }
+        },
+        (None, Some(text), None) => Ok((text.clone(), rival.title.clone())),
+        (None, None, Some(_)) => Err(fault(
+            "scenario",
+            "this version does not read MPS: write the rival in journal notation",
+        )),
+        _ => Err(fault("scenario", "the rival has not exactly one formulation")),
+    }
+}
+
+fn states(rival: &Rival) -> BTreeMap<String, FamilyState> {
+    let states = rival.families.iter().map(|(family, state)| {
+        let state = match state {
+            record::scenario::FamilyState::In => FamilyState::In,
+            record::scenario::FamilyState::OnDemand => FamilyState::OnDemand,
+            record::scenario::FamilyState::Out => FamilyState::Out,
+        };
+        (family.clone(), state)
+    });
+    states.collect()
+}
+
+fn unreadable(text: &str, reading: &Reading) -> ErrorReport {
+    ErrorReport {
+        message: "the instance cannot be read".to_owned(),
+        complaints: reading.complaints.iter().map(|found| of_instance(text, found)).collect(),
+        place: "instance".to_owned(),
+    }
+}
+
+fn not_a_model(text: &str, found: &[Diagnostic]) -> ErrorReport {
+    ErrorReport {
+        message: "the formulation does not become a model".to_owned(),
+        complaints: found.iter().map(|one| of_diagnostic(text, one)).collect(),
+        place: "rival".to_owned(),
+    }
+}

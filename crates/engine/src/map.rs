@@ -1,0 +1,44 @@
+//! From the types of the other crates to those that are saved and sent; one idea a file.
+//!
+//! Zeros are +0 and nothing is NaN on the way out.
+
+mod catalogue;
+mod complaint;
+mod event;
+mod instance;
+mod model;
+mod node;
+mod root;
+mod search;
+mod settings;
+
+pub(crate) use catalogue::catalogue_entries;
+pub(crate) use complaint::{of_diagnostic, of_instance};
+pub(crate) use event::event;
+pub(crate) use instance::instance_report;
+pub(crate) use model::{Stops, rival_report};
+pub(crate) use node::node_detail;
+pub(crate) use root::{root_report, stopped_root};
+pub(crate) use search::search_report;
+pub(crate) use settings::settings;
+
+/// How a relaxation or a search ended; one that goes on is stopped for now.
+fn status(status: tree::Status) -> record::results::Status {
+    use record::results::Status;
+    match status {
+        tree::Status::Optimal => Status::Optimal,
+        tree::Status::Infeasible => Status::Infeasible,
+        tree::Status::Unbounded => Status::Unbounded,
+        tree::Status::Limit | tree::Status::Running => Status::Limit,
+    }
+}
+
+/// The value with −0 as 0.
+pub(crate) fn tidy(value: f64) -> f64 {
+    value + 0.0
+}
+
+/// A bound or value; `None` when it is infinite or not a number.
+pub(crate) fn finite(value: f64) -> Option<f64> {
+    value.is_finite().then(|| tidy(value))
+}

@@ -1,0 +1,60 @@
+//! A node in full.
+
+use model::{ColumnId, Model};
+use record::message::{Arc, ColumnValue, NodeDetail, ViolatedSubset};
+
+use super::event::{branch, node_state, number};
+use super::{Stops, finite, tidy};
+
+/// Values of less are not listed.
+const ZERO: f64 = 1e-9;
+
+/// Values nearer to a whole number are whole: the search's own tolerance.
+const INTEGRALITY: f64 = 1e-6;
+
+/// The node as it is shown: values that are not 0, arcs between stops, violated sets.
+pub(crate) fn node_detail(model: &Model, stops: &Stops, view: &tree::NodeView) -> NodeDetail {
+    let values = values(model, view);
+    NodeDetail {
+        node: number(view.node),
+        state: node_state(view.state),
+        depth: view.depth,
+        bound: view.bound.and_then(finite),
+        checked_bound: view.checked_bound.as_ref().map(ToString::to_string),
+        path: view.path.iter().map(branch).collect(),
+        arcs: values.iter().filter_map(|value| arc(model, stops, value)).collect(),
+        values,
+        violated: view.violated.iter().map(|found| violated(model, found)).collect(),
+        ray: view.ray.iter().map(|(row, y)| (row.clone(), tidy(*y))).collect(),
+    }
+}
+
+fn values(model: &Model, view: &tree::NodeView) -> Vec<ColumnValue> {
+    let columns = (0..).map(ColumnId).zip(view.x.iter().zip(&view.reduced_costs));
+    let shown = columns.filter(|(_, (value, _))| value.abs() > ZERO);
+    let values = shown.map(|(id, (&value, &reduced_cost))| {
+        let column = &model.columns()[id.index()];
+        ColumnValue {
+            column: id.0,
+            value: tidy(value),
+            reduced_cost: tidy(reduced_cost),
+            cost: model.numbers().float(column.cost),
+            fractional: column.integer && (value - value.round()).abs() > INTEGRALITY,
+        }
+    });
+    values.collect()
+}
+
+fn arc(model: &Model, stops: &Stops, value: &ColumnValue) -> Option<Arc> {
+    let (from, to) = stops.arc(model, ColumnId(value.column))?;
+    Some(Arc { from, to, value: value.value, column: value.column })
+}
+
+fn violated(model: &Model, found: &tree::ViolatedSubset) -> ViolatedSubset {
+    let subset = found.subset.iter().map(|&label| model.labels().name(label).to_owned());
+    ViolatedSubset {
+        family: found.family.clone(),
+        subset: subset.collect(),
+        violation: tidy(found.violation),
+    }
+}

@@ -1,0 +1,43 @@
+//! What a search gave, so far or at its end.
+
+use model::{ColumnId, Model};
+use record::results::{SearchReport, SolutionEntry};
+
+use super::{finite, status, tidy};
+
+/// Values of less are not listed.
+const ZERO: f64 = 1e-9;
+
+/// The report of a search. One that stands still is reported as stopped by a limit: paused.
+pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchReport {
+    let summary = search.summary();
+    let paused = summary.status == tree::Status::Running;
+    let incumbent = summary.incumbent.and_then(finite);
+    SearchReport {
+        status: status(summary.status),
+        bound: summary.bound.and_then(finite),
+        incumbent,
+        gap: summary.gap.and_then(finite).filter(|_| incumbent != Some(0.0)),
+        nodes: summary.nodes,
+        open: summary.open,
+        iterations: summary.iterations,
+        work: summary.work,
+        solution: solution(model, &summary.solution),
+        checked: summary.checked,
+        stopped: if paused { Some("paused".to_owned()) } else { summary.stopped },
+    }
+}
+
+fn solution(model: &Model, values: &[f64]) -> Vec<SolutionEntry> {
+    let columns = (0..).map(ColumnId).zip(values).filter(|(_, value)| value.abs() > ZERO);
+    let entries = columns.map(|(column, &value)| SolutionEntry {
+        variable: model.variables()[model.columns()[column.index()].variable.index()].name.clone(),
+        indices: labels(model, model.column_tuple(column)),
+        value: tidy(value),
+    });
+    entries.collect()
+}
+
+fn labels(model: &Model, tuple: &[model::LabelId]) -> Vec<String> {
+    tuple.iter().map(|&label| model.labels().name(label).to_owned()).collect()
+}

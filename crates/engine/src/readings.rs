@@ -1,0 +1,72 @@
+//! Instance texts are read once, and again only when they change.
+
+use std::rc::Rc;
+
+use instance::{Reader, Reading};
+use record::message::InstanceReport;
+use record::results::ErrorReport;
+use record::scenario::InstanceText;
+
+use crate::fault::unknown;
+use crate::map::instance_report;
+
+/// The last text that was read, with what came out of it.
+#[derive(Debug, Default)]
+pub(crate) struct Readings {
+    last: Option<(Option<String>, String, Rc<Reading>)>,
+}
+
+impl Readings {
+    /// What a reader understood of a text.
+    ///
+    /// # Errors
+    /// A reader that does not exist.
+    pub(crate) fn read(&mut self, text: &InstanceText) -> Result<Rc<Reading>, ErrorReport> {
+        if let Some((reader, known, reading)) = &self.last
+            && *reader == text.reader
+            && *known == text.text
+        {
+            return Ok(Rc::clone(reading));
+        }
+        let reader = match text.reader.as_deref() {
+            None => None,
+            Some(name) => Some(reader(name)?),
+        };
+        let reading = Rc::new(instance::read(&text.text, reader));
+        self.last = Some((text.reader.clone(), text.text.clone(), Rc::clone(&reading)));
+        Ok(reading)
+    }
+
+    /// The report of a text.
+    ///
+    /// # Errors
+    /// A reader that does not exist.
+    pub(crate) fn report(&mut self, text: &InstanceText) -> Result<InstanceReport, ErrorReport> {
+        let reading = self.read(text)?;
+        Ok(instance_report(&text.text, &reading))
+    }
+}
+
+fn reader(name: &str) -> Result<Reader, ErrorReport> {
+    let known: Vec<&str> = Reader::ALL.iter().map(|reader| reader.name()).collect();
+    Reader::from_name(name).ok_or_else(|| unknown("instance", "reader", name, &known))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn an_unchanged_text_is_not_read_again() {
+        let mut readings = Readings::default();
+        let mut text = InstanceText { text: "0 1\n2 0\n".to_owned(), ..InstanceText::default() };
+        let first = readings.read(&text).expect("a reader");
+        text.bind.insert("c".to_owned(), "d".to_owned());
+        assert!(Rc::ptr_eq(&first, &readings.read(&text).expect("a reader")));
+        text.reader = Some("matrix".to_owned());
+        assert!(!Rc::ptr_eq(&first, &readings.read(&text).expect("a reader")));
+        text.reader = Some("matrx".to_owned());
+        let error = readings.read(&text).expect_err("no reader");
+        assert!(error.message.contains("did you mean \"matrix\"?"), "{error}");
+    }
+}

@@ -1,0 +1,104 @@
+//! One worker: requests in, slices of work, replies out.
+
+use std::collections::VecDeque;
+
+use record::message::{Envelope, Reply, Request, RunNumber};
+use record::wire::{read_request, write_envelope};
+
+use crate::fault::fault;
+use crate::lane::Lane;
+use crate::map::catalogue_entries;
+use crate::outbox::Outbox;
+use crate::readings::Readings;
+use crate::warm::warm;
+
+/// A lane's worker: it holds at most one rival, and reads instances and lists formulations.
+#[derive(Debug, Default)]
+pub struct Worker {
+    requests: VecDeque<Request>,
+    readings: Readings,
+    lane: Option<Lane>,
+    run: RunNumber,
+    outbox: Outbox,
+}
+
+impl Worker {
+    /// A worker without a rival.
+    #[must_use]
+    pub fn new() -> Self {
+        Self::default()
+    }
+
+    /// Takes a request; it is carried out by [`Self::advance`], in order.
+    pub fn handle(&mut self, request: Request) {
+        self.requests.push_back(request);
+    }
+
+    /// Takes a request as the bytes of [`record::wire`]; other bytes are answered by
+    /// [`Reply::Failed`].
+    pub fn handle_bytes(&mut self, bytes: &[u8]) {
+        match read_request(bytes) {
+            Ok(request) => self.handle(request),
+            Err(error) => self.reply(Reply::Failed(fault("message", error.to_string()))),
+        }
+    }
+
+    /// Works for about `ticks` (non-zeros touched), or carries out one request. Whether there
+    /// is more to do.
+    pub fn advance(&mut self, ticks: u64) -> bool {
+        if let Some(request) = self.requests.pop_front() {
+            self.carry_out(request);
+        } else if let Some(lane) = &mut self.lane {
+            lane.advance(ticks, &mut self.readings, &mut self.outbox);
+        }
+        !self.requests.is_empty() || self.lane.as_ref().is_some_and(Lane::is_busy)
+    }
+
+    /// The replies since the last call, in order.
+    pub fn take(&mut self) -> Vec<Envelope> {
+        self.outbox.take()
+    }
+
+    /// The replies since the last call as the bytes of [`record::wire`]. A reply too long to
+    /// send is replaced by [`Reply::Failed`].
+    pub fn take_bytes(&mut self) -> Vec<Vec<u8>> {
+        let written = self.take().into_iter().map(|envelope| {
+            write_envelope(&envelope).or_else(|error| {
+                let reply = Reply::Failed(fault("message", error.to_string()));
+                write_envelope(&Envelope { reply, ..envelope })
+            })
+        });
+        written.filter_map(Result::ok).collect()
+    }
+
+    fn carry_out(&mut self, request: Request) {
+        match request {
+            Request::Warm => {
+                warm();
+                self.reply(Reply::Ready { engine: crate::VERSION.to_owned() });
+            }
+            Request::Read(text) => {
+                let reply = match self.readings.report(&text) {
+                    Ok(report) => Reply::InstanceRead(Box::new(report)),
+                    Err(error) => Reply::Failed(error),
+                };
+                self.reply(reply);
+            }
+            Request::List => self.reply(Reply::Catalogue(catalogue_entries())),
+            Request::Load(job) => {
+                self.run = job.run;
+                self.lane = Some(Lane::new(*job));
+            }
+            Request::Run { .. } | Request::Pause | Request::Stop | Request::Inspect(_) => {
+                match &mut self.lane {
+                    Some(lane) => lane.act(&request, &mut self.outbox),
+                    None => self.reply(Reply::Failed(fault("message", "no rival is loaded"))),
+                }
+            }
+        }
+    }
+
+    fn reply(&mut self, reply: Reply) {
+        self.outbox.push(self.run, reply);
+    }
+}

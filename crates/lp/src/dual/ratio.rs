@@ -35,15 +35,24 @@ impl Breakpoint {
     fn ratio(&self) -> f64 {
         self.slack / self.alpha
     }
+
+    /// The ratio with Harris's tolerance.
+    fn relaxed(&self) -> f64 {
+        (self.slack + HARRIS_DUAL) / self.alpha
+    }
 }
 
 /// Chooses the entering variable for the row in `scratch.row`.
 pub(crate) fn choose(core: &mut Core, position: u32, sign: f64) -> Choice {
     let mut points = breakpoints(core, sign);
+    core.ticks += points.len() as u64;
+    let slope = core.violation[position as usize].sqrt();
+    if let Some(entering) = first_group(&points, slope) {
+        return Choice::Enter { entering, flips: Vec::new() };
+    }
     points
         .sort_unstable_by(|a, b| a.ratio().total_cmp(&b.ratio()).then(a.variable.cmp(&b.variable)));
-    core.ticks += 2 * points.len() as u64;
-    let slope = core.violation[position as usize].sqrt();
+    core.ticks += points.len() as u64;
     let Some(groups) = profitable_groups(&points, slope) else { return Choice::None };
     let last = best_group(&points, &groups);
     let Some(entering) = points[groups[last].clone()].iter().reduce(larger_pivot) else {
@@ -51,6 +60,17 @@ pub(crate) fn choose(core: &mut Core, position: u32, sign: f64) -> Choice {
     };
     let flips = points[..groups[last].start].iter().map(|point| point.variable).collect();
     Choice::Enter { entering: entering.variable, flips }
+}
+
+/// The largest pivot of the first group, when the slope ends there: the common case, without sorting.
+fn first_group(points: &[Breakpoint], slope: f64) -> Option<u32> {
+    let bound = points.iter().map(Breakpoint::relaxed).reduce(|a, b| if b < a { b } else { a })?;
+    let group = || points.iter().filter(|point| point.ratio() <= bound);
+    let loss: f64 = group().map(|point| point.alpha * point.range).sum();
+    if slope - loss > PRIMAL {
+        return None;
+    }
+    group().reduce(larger_pivot).map(|point| point.variable)
 }
 
 /// The variables whose reduced cost falls to zero along the step.
@@ -84,8 +104,7 @@ fn profitable_groups(points: &[Breakpoint], slope: f64) -> Option<Vec<Range<usiz
     let mut bound = vec![f64::INFINITY; points.len()];
     let mut least = f64::INFINITY;
     for (k, point) in points.iter().enumerate().rev() {
-        let relaxed = (point.slack + HARRIS_DUAL) / point.alpha;
-        least = if relaxed < least { relaxed } else { least };
+        least = if point.relaxed() < least { point.relaxed() } else { least };
         bound[k] = least;
     }
     let mut groups = Vec::new();
@@ -115,7 +134,7 @@ fn best_group(points: &[Breakpoint], groups: &[Range<usize>]) -> usize {
     groups.iter().rposition(|range| largest(range) >= enough).unwrap_or(0)
 }
 
-/// The one with the larger pivot; the earlier one on ties.
+/// The one with the larger pivot, on ties the lower index.
 fn larger_pivot<'a>(a: &'a Breakpoint, b: &'a Breakpoint) -> &'a Breakpoint {
-    if b.alpha > a.alpha { b } else { a }
+    if b.alpha > a.alpha || (b.alpha == a.alpha && b.variable < a.variable) { b } else { a }
 }

@@ -195,7 +195,6 @@ impl Simplex {
     /// Makes a basis current, mended where it does not fit. What follows depends on it alone, not on earlier solves.
     pub fn load_basis(&mut self, basis: &Basis) -> Repair {
         self.forget();
-        self.core.threshold = MARKOWITZ;
         self.core.load(basis)
     }
 
@@ -285,11 +284,7 @@ impl Simplex {
     fn begin_attempt(&mut self) {
         self.round = 0;
         self.attempt_began = self.core.iterations;
-        let threshold = if self.attempt == 0 { MARKOWITZ } else { MARKOWITZ_CAREFUL };
-        if threshold != self.core.threshold {
-            self.core.threshold = threshold;
-            self.core.canonical = false;
-        }
+        self.core.threshold = if self.attempt == 0 { MARKOWITZ } else { MARKOWITZ_CAREFUL };
         self.set_room();
         self.phase = Phase::Evaluate;
     }

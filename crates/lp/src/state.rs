@@ -188,9 +188,13 @@ impl Core {
         self.canonical = false;
     }
 
-    /// Factorises the basis in the order of the head. Dependent columns are replaced by
-    /// logicals; returns how many.
+    /// Factorises the basis in the order of the head, with the threshold of the attempt. Dependent columns are
+    /// replaced by logicals; returns how many.
     pub(crate) fn refactor(&mut self) -> u32 {
+        self.refactor_with(self.threshold)
+    }
+
+    fn refactor_with(&mut self, threshold: f64) -> u32 {
         let mut start = Vec::with_capacity(self.head.len() + 1);
         let mut entry = Vec::new();
         start.push(0);
@@ -199,7 +203,7 @@ impl Core {
             start.push(entry.len());
         }
         let (factor, replaced, ticks) =
-            Factor::factorise(&BasisColumns::new(start, entry), self.threshold);
+            Factor::factorise(&BasisColumns::new(start, entry), threshold);
         self.factor = factor;
         self.ticks += ticks;
         self.refactors += 1;
@@ -214,7 +218,7 @@ impl Core {
         replaced.len() as u32
     }
 
-    /// Factors of the sorted head without updates; returns how many columns were replaced.
+    /// Factors of the sorted head without updates, the same ones in every attempt; returns how many columns were replaced.
     pub(crate) fn refactor_canonical(&mut self) -> u32 {
         if self.canonical && self.factor.updates() == 0 {
             return 0;
@@ -222,7 +226,7 @@ impl Core {
         let mut replaced = 0;
         loop {
             self.sort_head();
-            let now = self.refactor();
+            let now = self.refactor_with(MARKOWITZ);
             replaced += now;
             if now == 0 {
                 break;

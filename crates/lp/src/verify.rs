@@ -253,3 +253,61 @@ impl Core {
         }
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::problem::Problem;
+
+    /// min x + 2y, x + y ≥ 3, x ≤ 2: optimal at (2, 1), y basic.
+    fn optimal() -> Core {
+        let mut problem = Problem::new();
+        let x = problem.add_column(1.0, 0.0, 2.0).unwrap();
+        let y = problem.add_column(2.0, 0.0, f64::INFINITY).unwrap();
+        problem.add_row(&[(x, 1.0), (y, 1.0)], 3.0, f64::INFINITY).unwrap();
+        let mut core = Core::new(problem);
+        core.status = vec![Status::Upper, Status::Basic, Status::Lower];
+        core.refactor_canonical();
+        core.compute_basic();
+        core.compute_reduced();
+        core
+    }
+
+    #[test]
+    fn a_right_solution_passes() {
+        let solution = optimal().solution().unwrap();
+        assert_eq!(
+            (solution.objective, solution.x, solution.duals),
+            (4.0, vec![2.0, 1.0], vec![2.0])
+        );
+    }
+
+    #[test]
+    fn wrong_books_do_not_pass() {
+        let mut moved = optimal();
+        moved.basic[0] = 0.9;
+        assert_eq!(moved.solution(), Err("row 0 is violated".to_owned()));
+        let mut not_a_number = optimal();
+        not_a_number.basic[0] = f64::NAN;
+        assert!(not_a_number.solution().is_err());
+        let mut weak = optimal();
+        weak.reduced[2] = 1.5;
+        assert_eq!(weak.solution(), Err("primal and dual objective differ".to_owned()));
+        let mut wrong = optimal();
+        wrong.reduced[2] = 2.5;
+        assert_eq!(wrong.solution(), Err("a reduced cost has the wrong sign".to_owned()));
+    }
+
+    #[test]
+    fn rays_that_prove_nothing_do_not_pass() {
+        let mut core = optimal();
+        core.scratch.rho.reset(1);
+        core.scratch.rho.set(0, 1.0);
+        assert_eq!(core.farkas_ray(1.0), None);
+        core.upper[1] = 0.5;
+        assert_eq!(core.farkas_ray(1.0), Some(Ray { multipliers: vec![1.0] }));
+        assert_eq!(core.farkas_ray(-1.0), None);
+        core.compute_column(2);
+        assert!(core.unbounded_ray(2, 1.0).is_err());
+    }
+}

@@ -65,13 +65,27 @@ fn the_dual_objective_never_falls_and_signs_hold() {
     }
 }
 
+/// The same with columns that have the wrong cost and no upper bound, so that the start is shifted.
+fn shifted(salt: usize) -> Core {
+    let mut core = covering(25, 15, salt);
+    for j in (0..25).step_by(4) {
+        core.cost[j] = -core.cost[j];
+        core.upper[j] = f64::INFINITY;
+    }
+    core.restore_given();
+    core
+}
+
 #[test]
 fn values_carried_along_agree_with_fresh_ones() {
-    for salt in 60..80 {
-        let mut core = prepared(covering(25, 15, salt));
-        let mut state = DualState::default();
+    for salt in 60..90 {
+        let mut core = prepared(if salt < 75 { covering(25, 15, salt) } else { shifted(salt) });
+        let mut state = DualState { may_perturb: true, ..DualState::default() };
+        let wrong = core.worst_reduced() > 0.0;
         begin(&mut core, &mut state);
+        state.stall = STALL;
         while step(&mut core, &mut state) == DualStep::Moved {}
+        assert!(state.perturbed && (salt < 75 || wrong));
         let (basic, reduced, head) = (core.basic.clone(), core.reduced.clone(), core.head.clone());
         core.refactor();
         core.compute_basic();
@@ -83,4 +97,20 @@ fn values_carried_along_agree_with_fresh_ones() {
         assert!(near(&basic, &core.basic) && near(&reduced, &core.reduced));
         assert_eq!(core.check(), Ok(()));
     }
+}
+
+#[test]
+fn the_ratio_test_flips_boxed_variables() {
+    let mut problem = Problem::new();
+    let columns: Vec<Col> =
+        (0..4).map(|j| problem.add_column(f64::from(j) + 1.0, 0.0, 1.0).unwrap()).collect();
+    let row: Vec<(Col, f64)> = columns.iter().map(|&j| (j, 1.0)).collect();
+    problem.add_row(&row, 2.5, f64::INFINITY).unwrap();
+    let mut core = prepared(Core::new(problem));
+    let mut state = DualState::default();
+    begin(&mut core, &mut state);
+    assert_eq!(step(&mut core, &mut state), DualStep::Moved);
+    assert_eq!(step(&mut core, &mut state), DualStep::Feasible);
+    assert_eq!(core.status[..4], [Status::Upper, Status::Upper, Status::Basic, Status::Lower]);
+    assert_eq!((core.basic[0], core.iterations), (0.5, 1));
 }

@@ -8,20 +8,17 @@ use std::collections::BTreeSet;
 
 use lp::{Limits, Outcome};
 use model::{LabelId, Number};
-use separate::{Progress, Separator};
+use separate::{Progress, Separator, Violated};
 
 use crate::event::{Branch, NodeId, NodeState};
 use crate::relaxation::{RowOrigin, direction};
 use crate::search::Search;
 
-/// Arcs with less do not join stops.
-const SUPPORT: f64 = 1e-6;
-
 /// A set of labels and the member of a family that it violates.
 #[derive(Debug, Clone, PartialEq)]
 pub struct ViolatedSubset {
-    /// The family by name; `subtour` for parts of a round trip of a model without families
-    /// over subsets.
+    /// The family by name; `subtour` in a model without families over subsets that holds round
+    /// trips.
     pub family: String,
     /// The set.
     pub subset: BTreeSet<LabelId>,
@@ -103,41 +100,31 @@ impl Search {
 
     /// The sets whose member a point violates.
     fn violated(&self, x: &[f64]) -> Vec<ViolatedSubset> {
-        if !self.model.subset_families().is_empty() {
-            return self
-                .rounds
-                .separators()
-                .iter()
-                .flat_map(|separator| self.separated_by(separator, x))
-                .collect();
+        if self.model.subset_families().is_empty() {
+            return self.violated_subtours(x);
         }
-        let Some(trip) = &self.trip else { return Vec::new() };
-        let parts = trip.parts(x, SUPPORT);
-        if parts.len() < 2 {
-            return Vec::new();
-        }
-        let set = |part: Vec<LabelId>| ViolatedSubset {
-            family: "subtour".to_owned(),
-            subset: part.into_iter().collect(),
-            violation: 1.0,
+        let name = |found: &Violated| {
+            let family = self.model.subset_family(found.family).family;
+            self.model.families()[family.index()].name.clone()
         };
-        parts.into_iter().map(set).collect()
+        let separators = self.rounds.separators().iter();
+        let found = separators.flat_map(|separator| whole_round(separator.clone(), x));
+        found
+            .map(|v| ViolatedSubset { family: name(&v), subset: v.subset, violation: v.violation })
+            .collect()
     }
 
-    fn separated_by(&self, separator: &Separator, x: &[f64]) -> Vec<ViolatedSubset> {
-        let mut separator = separator.clone();
-        separator.start(x);
-        while separator.advance(u64::from(u32::MAX)) == Progress::Working {}
-        let family =
-            |id| self.model.families()[self.model.subset_family(id).family.index()].name.clone();
-        let found = separator.take().into_iter();
-        found
-            .map(|v| ViolatedSubset {
-                family: family(v.family),
-                subset: v.subset,
-                violation: v.violation,
-            })
-            .collect()
+    /// In a model that holds round trips: the sets that arcs leave with less than 1 in all.
+    fn violated_subtours(&self, x: &[f64]) -> Vec<ViolatedSubset> {
+        let Some(trip) = &self.trip else { return Vec::new() };
+        let Some(separator) = trip.separator(&self.model) else { return Vec::new() };
+        let arcs: Vec<f64> = trip.arcs.iter().map(|&(_, _, column)| x[column.index()]).collect();
+        let subtour = |found: Violated| ViolatedSubset {
+            family: "subtour".to_owned(),
+            subset: trip.stops_of(&found.subset),
+            violation: found.violation,
+        };
+        whole_round(separator, &arcs).into_iter().map(subtour).collect()
     }
 
     /// The rows of a ray that count, by name.
@@ -169,4 +156,11 @@ impl Search {
             }
         }
     }
+}
+
+/// What one round of a separator finds.
+fn whole_round(mut separator: Separator, x: &[f64]) -> Vec<Violated> {
+    separator.start(x);
+    while separator.advance(u64::MAX) == Progress::Working {}
+    separator.take()
 }

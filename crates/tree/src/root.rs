@@ -1,5 +1,6 @@
 //! The root relaxation: what it gave, and the step from it into the search.
 
+use lp::Outcome;
 use model::Number;
 
 use crate::branching::Choice;
@@ -125,6 +126,13 @@ impl Search {
         let mut result = self.root_result(status, hand.as_ref());
         if let Ending::Stopped(why) = &ending {
             result.stopped = Some(why.clone());
+            if let Some((bound, proved)) = self.bound_so_far(hand.as_ref()) {
+                result.bound = Some(self.user(bound));
+                result.checked = proved.is_some();
+                result.checked_bound = proved;
+                self.tree.node_mut(NodeId::ROOT).bound = bound;
+                self.ledger.unsolved.push(NodeId::ROOT);
+            }
         }
         self.root = Some(result);
         self.tree.node_mut(NodeId::ROOT).state = state;
@@ -132,7 +140,29 @@ impl Search {
             self.close_without_bound(hand, state);
         }
         self.end(ending);
+        self.announce();
         Some(Progress::RootSolved)
+    }
+
+    /// The best bound that a root relaxation gave before it was stopped, internal, with what
+    /// its multipliers prove: that of the last round of separation, or of the LP that was
+    /// left.
+    fn bound_so_far(&self, hand: Option<&Hand>) -> Option<(f64, Option<Number>)> {
+        let relaxation = self.relaxation.as_ref()?;
+        let round = hand.and_then(|hand| hand.point.as_ref());
+        let round = round.map(|point| (point.bound, &point.duals));
+        let left = match relaxation.simplex.outcome() {
+            Some(Outcome::Stopped { bound: Some(bound), duals, .. }) if bound.is_finite() => {
+                Some((relaxation.internal(*bound), duals))
+            }
+            _ => None,
+        };
+        let best = match (round, left) {
+            (Some(round), Some(left)) if left.0 > round.0 => left,
+            (Some(round), _) => round,
+            (None, left) => left?,
+        };
+        Some((best.0, relaxation.prove(best.1)))
     }
 
     /// Leaves the root: branches, or drops it where a heuristic has closed it.

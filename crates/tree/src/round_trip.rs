@@ -4,9 +4,13 @@
 //! every i and Σ_i x_ij = 1 for every j among the written rows, holds every round trip over its
 //! stops. Whether a round trip is a solution is left to the check of each one.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
-use model::{ColumnId, LabelId, Model, Number, RowId};
+use model::{
+    ColumnId, ColumnSpec, FamilyState, LabelId, Model, ModelBuilder, Number, Relation, RowId,
+    Scope, Sense, SubsetCondition, SubsetFamily, SubsetTerm,
+};
+use separate::Separator;
 
 use crate::relaxation::{direction, float_bounds, is_meant};
 
@@ -77,37 +81,45 @@ impl RoundTrip {
         trip
     }
 
-    /// The parts into which the arcs with a value join the stops, by their first stop; one part when
-    /// all hang together. `O(arcs)`.
-    pub(crate) fn parts(&self, x: &[f64], least: f64) -> Vec<Vec<LabelId>> {
-        let mut part: Vec<usize> = (0..self.stops.len()).collect();
-        for &(tail, head, column) in &self.arcs {
-            if x[column.index()] > least {
-                let (a, b) = (root(&part, tail), root(&part, head));
-                let (low, high) = if a < b { (a, b) } else { (b, a) };
-                part[high] = low;
-            }
+    /// A separator of the sets that arcs leave with less than 1 in all (Dantzig, Fulkerson,
+    /// Johnson 1954), without the first stop; its columns are `arcs` in order.
+    pub(crate) fn separator(&self, model: &Model) -> Option<Separator> {
+        let mut builder = ModelBuilder::new("", Sense::Minimise);
+        let stops: Vec<LabelId> =
+            self.stops.iter().map(|&stop| builder.label(model.labels().name(stop))).collect();
+        let free = ColumnSpec { lower: None, upper: None, cost: Number::ZERO, integer: false };
+        let mut terms = Vec::with_capacity(self.arcs.len());
+        for &(tail, head, _) in &self.arcs {
+            let column = builder.column(&[stops[tail], stops[head]], &free).ok()?;
+            let scope = Scope::Leaving(stops[tail], stops[head]);
+            terms.push(SubsetTerm { column, coefficient: Number::ONE, scope });
         }
-        let mut parts: BTreeMap<usize, Vec<LabelId>> = BTreeMap::new();
-        for (stop, &label) in self.stops.iter().enumerate() {
-            parts.entry(root(&part, stop)).or_default().push(label);
-        }
-        parts.into_values().collect()
+        let most = u32::try_from(stops.len()).ok()?.checked_sub(1)?;
+        let family = builder.family("", FamilyState::OnDemand, false);
+        let id = builder.subset_family(SubsetFamily {
+            family,
+            tuple: Vec::new(),
+            conditions: vec![
+                SubsetCondition::Size { at_least: 1, at_most: most },
+                SubsetCondition::Avoids(*stops.first()?),
+            ],
+            terms,
+            weights: vec![Number::ZERO; stops.len()],
+            ground: stops,
+            constant: -Number::ONE,
+            relation: Relation::AtLeast,
+        });
+        Some(Separator::new(&builder.build(), id.ok()?))
     }
-}
 
-fn root(part: &[usize], mut at: usize) -> usize {
-    while part[at] != at {
-        at = part[at];
+    /// The stops of a set that the separator found.
+    pub(crate) fn stops_of(&self, subset: &BTreeSet<LabelId>) -> BTreeSet<LabelId> {
+        subset.iter().filter_map(|label| self.stops.get(label.index()).copied()).collect()
     }
-    at
 }
 
 /// The column lists of the rows that say Σ x = 1 over columns in the range.
-fn unit_sums(
-    model: &Model,
-    columns: &std::ops::Range<u32>,
-) -> std::collections::BTreeSet<Vec<ColumnId>> {
+fn unit_sums(model: &Model, columns: &std::ops::Range<u32>) -> BTreeSet<Vec<ColumnId>> {
     let rows = (0..model.row_count()).map(RowId::from_index).filter(|&row| is_meant(model, row));
     rows.filter(|&row| is_unit_sum(model, row, columns))
         .map(|row| model.row_entries(row).iter().map(|&(column, _)| column).collect())

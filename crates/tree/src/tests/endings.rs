@@ -117,10 +117,28 @@ fn limits_stop_and_say_so() {
     let (same, _) =
         run(&model, &Settings { iteration_limit: Some(half), ..Settings::default() }, 13);
     assert_eq!(same, events);
+}
 
-    let (_, summary) =
-        run(&model, &Settings { iteration_limit: Some(3), ..Settings::default() }, u64::MAX);
-    assert_eq!((summary.status, summary.bound, summary.nodes), (Status::Limit, None, 1));
+#[test]
+fn a_root_stopped_by_a_limit_keeps_the_bound_it_had() {
+    let (model, best) = trip();
+    let settings = Settings { iteration_limit: Some(3), ..Settings::default() };
+    let mut search = Search::new(Rc::clone(&model), settings);
+    assert_eq!(advance_far(&mut search), Progress::RootSolved);
+    let root = search.root().unwrap();
+    assert_eq!((root.status, root.stopped.as_deref()), (Status::Limit, Some("iteration limit")));
+    assert!(root.checked && root.bound.unwrap() < best && root.iterations == 3);
+    assert_eq!(advance_far(&mut search), Progress::Finished);
+    let summary = search.summary();
+    assert_eq!(
+        (summary.status, summary.bound, summary.nodes),
+        (Status::Limit, root_bound(&search), 1)
+    );
+    assert!(!summary.checked);
+}
+
+fn root_bound(search: &Search) -> Option<f64> {
+    search.root().unwrap().bound
 }
 
 #[test]
@@ -177,4 +195,60 @@ fn advance_far(search: &mut Search) -> Progress {
             return progress;
         }
     }
+}
+
+#[test]
+fn a_node_that_cannot_be_solved_keeps_its_parents_bound() {
+    let (model, best) = trip();
+    let mut search = Search::new(model, Settings::default());
+    assert_eq!(advance_far(&mut search), Progress::RootSolved);
+    let root = search.root().unwrap().bound;
+    search.run(None);
+    while search.hand.is_none() {
+        search.advance(1);
+    }
+    assert_eq!(search.unsolved("the kernel gave up"), None);
+    finish(&mut search, 1000);
+    let summary = search.summary();
+    assert_eq!((summary.status, summary.bound), (Status::Limit, root));
+    assert!(summary.incumbent.unwrap() >= best && !summary.checked);
+    let why = summary.stopped.unwrap();
+    assert_eq!(why, "a node could not be solved (1; the last: the kernel gave up)");
+    let unsolved =
+        |e: &Event| matches!(e, Event::Solved { state: NodeState::Unsolved, bound: None, .. });
+    assert_eq!(search.take_events().iter().filter(|e| unsolved(e)).count(), 1);
+}
+
+#[test]
+fn a_family_that_cannot_be_checked_leaves_the_solution_unproved() {
+    // x(S) ≤ Σ_{i∈S} w_i over all S of 14 elements of odd size: 2^13 members, of no known shape.
+    let mut builder = ModelBuilder::new("t", Sense::Maximise);
+    let elements: Vec<_> = (0..14).map(|i| builder.label(&format!("e{i}"))).collect();
+    let mut terms = Vec::new();
+    for pair in elements.windows(2) {
+        let column = builder.column(pair, &spec((0, 1), 1, true)).unwrap();
+        let scope = model::Scope::Crossing(pair[0], pair[1]);
+        terms.push(model::SubsetTerm { column, coefficient: whole(1), scope });
+    }
+    let family = builder.family("odd", model::FamilyState::OnDemand, false);
+    let odd = model::SubsetFamily {
+        family,
+        tuple: Vec::new(),
+        ground: elements,
+        conditions: vec![model::SubsetCondition::Odd(true)],
+        terms,
+        weights: vec![whole(-2); 14],
+        constant: whole(-1),
+        relation: model::Relation::AtMost,
+    };
+    builder.subset_family(odd).unwrap();
+    let search = Search::new(Rc::new(builder.build()), Settings::default());
+    assert_eq!(search.separators()[0].exactness(), None);
+    let (_, summary) = run(search.model(), &Settings::default(), u64::MAX);
+    assert_eq!(
+        (summary.status, summary.incumbent, summary.checked),
+        (Status::Limit, Some(13.0), false)
+    );
+    let why = "not proved: a family over subsets has no exact membership check";
+    assert_eq!(summary.stopped.as_deref(), Some(why));
 }

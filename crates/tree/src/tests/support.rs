@@ -157,6 +157,8 @@ pub(super) fn random_model(seed: u64, binaries: usize, continuous: usize) -> Rc<
 pub(super) enum Form {
     /// Position labels (Miller, Tucker, Zemlin 1960).
     Labels,
+    /// One-commodity flow (Gavish, Graves 1978).
+    Flow,
     /// Subtours inside (Dantzig, Fulkerson, Johnson 1954), on demand.
     Subtours,
 }
@@ -187,6 +189,7 @@ pub(super) fn round_trip(costs: &[Vec<i64>], form: Form, sense: Sense) -> Rc<Mod
     }
     match form {
         Form::Labels => labels(&mut builder, &stops, &arcs),
+        Form::Flow => flow(&mut builder, &stops, &arcs),
         Form::Subtours => subtours(&mut builder, &stops, &arcs),
     }
     Rc::new(builder.build())
@@ -202,6 +205,29 @@ fn labels(builder: &mut ModelBuilder, stops: &[LabelId], arcs: &[(usize, usize, 
     for &(i, j, x) in arcs.iter().filter(|&&(i, j, _)| i != 0 && j != 0) {
         let entries = [(label[i - 1], 1), (label[j - 1], -1), (x, n - 1)];
         builder.row(&[stops[i], stops[j]], row(&entries, None, Some(n - 2))).unwrap();
+    }
+}
+
+fn flow(builder: &mut ModelBuilder, stops: &[LabelId], arcs: &[(usize, usize, ColumnId)]) {
+    let n = i64::try_from(stops.len()).unwrap();
+    builder.variable("f", true);
+    let mut flows = Vec::new();
+    for &(i, j, x) in arcs {
+        let column = builder.column(&[stops[i], stops[j]], &spec((0, n), 0, false)).unwrap();
+        flows.push((i, j, x, column));
+    }
+    builder.family("link", FamilyState::In, true);
+    for &(i, j, x, f) in &flows {
+        let entries = [(f, 1), (x, 1 - n)];
+        builder.row(&[stops[i], stops[j]], row(&entries, None, Some(0))).unwrap();
+    }
+    builder.family("deliver", FamilyState::In, false);
+    for (k, &stop) in stops.iter().enumerate().skip(1) {
+        let mut entries = Vec::new();
+        for &(i, j, _, f) in &flows {
+            entries.push((f, i64::from(j == k) - i64::from(i == k)));
+        }
+        builder.row(&[stop], row(&entries, Some(1), Some(1))).unwrap();
     }
 }
 

@@ -11,7 +11,7 @@ use crate::{Event, Origin, Status};
 fn is_trip(model: &Model, solution: &[f64]) -> bool {
     let arcs: Vec<_> = (0..model.columns().len())
         .map(model::ColumnId::from_index)
-        .filter(|c| model.column_tuple(*c).len() == 2 && solution[c.index()] > 0.5)
+        .filter(|c| model.columns()[c.index()].integer && solution[c.index()] > 0.5)
         .map(|c| (model.column_tuple(c)[0], model.column_tuple(c)[1]))
         .collect();
     let mut seen = vec![arcs[0].0];
@@ -54,6 +54,14 @@ fn labels() {
     for seed in 10..16 {
         let costs = Random(seed).costs(6 + usize::try_from(seed % 3).unwrap(), 40);
         agrees(&costs, Form::Labels, Sense::Minimise);
+    }
+}
+
+#[test]
+fn flow() {
+    for seed in 20..23 {
+        let costs = Random(seed).distances(6 + usize::try_from(seed % 2).unwrap());
+        agrees(&costs, Form::Flow, Sense::Minimise);
     }
 }
 

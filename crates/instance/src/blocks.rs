@@ -23,6 +23,8 @@ use crate::text::{Line, lines};
 
 /// More cells than this are refused.
 const MAX_ENTRIES: usize = 4_000_000;
+/// More blocks than this are refused.
+const MAX_BLOCKS: usize = 1_000;
 
 enum Heading<'a> {
     List(&'a str),
@@ -102,8 +104,13 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<S
                 }
             }
         };
-        if entries > MAX_ENTRIES {
-            let message = format!("the blocks have more than {} cells", grouped(MAX_ENTRIES));
+        let blocks = instance.data().count();
+        if entries > MAX_ENTRIES || blocks >= MAX_BLOCKS {
+            let message = format!(
+                "there are more than {} cells or {} blocks",
+                grouped(MAX_ENTRIES),
+                grouped(MAX_BLOCKS)
+            );
             sink.error(line.span(), "too-large", message, "Paste a smaller instance.");
             return None;
         }

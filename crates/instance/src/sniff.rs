@@ -35,7 +35,8 @@ fn are_points(found: &[Line]) -> bool {
         .collect();
     let Some(first) = rows.first() else { return false };
     if points::is_heading(first) {
-        return true;
+        // A matrix may have stops called x and y: its rows are called so too.
+        return !rows[1..].iter().any(|row| row.first().is_some_and(|label| first.contains(label)));
     }
     let body = &rows[usize::from(!is_point(first, style))..];
     let above = |row: &Vec<String>| row.first().is_some_and(|label| first.contains(label));
@@ -74,6 +75,7 @@ mod tests {
             ("1 10 20\n2 11 21\n3 12 22\n4 13 23", Reader::Points),
             ("3\n4 5\n6 7 8", Reader::Matrix),
             ("a b c\na 1 2\nb 1 2\nc 1 2", Reader::Matrix),
+            (";x;y\nx;0;1\ny;1;0", Reader::Matrix),
             ("", Reader::Matrix),
         ] {
             assert_eq!(guess(text), reader, "{text}");

@@ -6,7 +6,7 @@ mod shape;
 #[cfg(test)]
 mod tests;
 
-use crate::cells::{Cell, MAX_CELLS, Separator, Style, is_blank, split, style};
+use crate::cells::{Cell, MAX_CELLS, Separator, Style, is_blank, is_word, split, style};
 use crate::complaint::{Complaints, count, excerpt, grouped};
 use crate::finish::RoundTrip;
 use crate::number::{Number, parse};
@@ -34,6 +34,9 @@ pub(crate) struct Table<'a> {
     pub(crate) style: Style,
     pub(crate) rows: Vec<Row<'a>>,
 }
+
+const LABEL_MEND: &str = "Write a number or a dash. If it belongs to a label with blanks, put the \
+    label in double quotes, or put tabs between the cells.";
 
 /// Splits a text into a table. A first line of words that a blank line follows is its title.
 pub(crate) fn table<'a>(text: &'a str, sink: &mut Complaints) -> Option<Table<'a>> {
@@ -136,7 +139,9 @@ fn value(cell: &Cell, style: Style, sink: &mut Complaints) -> Value {
         }
         Err(why) => {
             let message = format!("`{}` is not a number", excerpt(&cell.text));
-            sink.error(cell.span.clone(), "not-a-number", message, why.mend());
+            let spaced = style.separator == Separator::Space && is_word(&cell.text, false);
+            let mend = if spaced { LABEL_MEND } else { why.mend() };
+            sink.error(cell.span.clone(), "not-a-number", message, mend);
             Value::Broken
         }
     }

@@ -80,6 +80,8 @@ fn numbers_may_be_labels() {
 fn labels_with_blanks_need_another_separator() {
     let (labels, _) = square(";New Town;Old Mill\nNew Town;0;1\nOld Mill;2;0");
     assert_eq!(labels, "New Town Old Mill");
+    let reading = matrix("New Town 0 1\nOld Mill 2 0");
+    assert!(reading.complaints[0].mend.contains("double quotes"), "{:?}", reading.complaints);
     let (labels, _) = square("\"New Town\" 0 1\n\"Old Mill\" 2 0");
     assert_eq!(labels, "New Town Old Mill");
 }
@@ -215,7 +217,9 @@ fn noise_is_refused_quickly() {
     let long_line = "5 ".repeat(2_500_000);
     let many_lines = "é;x\n".repeat(1_000_000);
     let words = ("nothing of the kind ".repeat(125) + "\n").repeat(1_990);
-    for text in [long_line, many_lines, words] {
+    let many_blocks: String = (0..400_000).map(|name| format!("a{name}\n\n")).collect();
+    let keywords = "AB:1\nCOMMENT: 2\nTYPE: 3\n".repeat(200_000);
+    for text in [long_line, many_lines, words, many_blocks, keywords] {
         for reader in [None, Some(Reader::Points), Some(Reader::Tsplib), Some(Reader::Blocks)] {
             let reading = read(&text, reader);
             assert!(reading.instance.is_none() && !reading.complaints.is_empty());

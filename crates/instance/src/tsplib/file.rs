@@ -96,15 +96,15 @@ impl<'a> File<'a> {
     }
 
     fn set(&mut self, key: &'a str, value: &'a str, line: Line<'a>, sink: &mut Complaints) {
-        if self.keyword(key).is_some() && key != "COMMENT" {
-            let message = format!("{key} is given twice");
-            sink.error(line.span(), "keyword-twice", message, "Keep one of them.");
-        }
         if !KEYWORDS.contains(&key) {
             let message = format!("`{}` is not a keyword that is read", excerpt(key));
             sink.warn(line.span(), "keyword-unread", message, "");
+        } else if self.keyword(key).is_none() {
+            self.keywords.push((key, value, line));
+        } else if key != "COMMENT" {
+            let message = format!("{key} is given twice");
+            sink.error(line.span(), "keyword-twice", message, "Keep one of them.");
         }
-        self.keywords.push((key, value, line));
     }
 
     /// A keyword's value and line.

@@ -2,7 +2,7 @@
 
 use std::collections::{BTreeMap, BTreeSet};
 
-use model::{LabelId, SubsetCondition, SubsetFamily};
+use model::{LabelId, Number, SubsetCondition, SubsetFamily};
 
 /// What is decided about an element.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -21,6 +21,8 @@ pub(crate) struct Conditions {
     pub(crate) most: usize,
     /// Lists of which every set holds an element.
     pub(crate) meets: Vec<Vec<usize>>,
+    /// Lists of which every set lacks an element.
+    pub(crate) lacks: Vec<Vec<usize>>,
     /// The conditions of other kinds: parity, weight, clique.
     pub(crate) others: Vec<SubsetCondition>,
     /// Whether no set can meet them.
@@ -41,7 +43,10 @@ pub(crate) struct Part {
 pub(crate) enum Failure {
     TooSmall,
     TooLarge,
+    /// Holds no element of this list of `meets`.
     Misses(usize),
+    /// Holds all elements of this list of `lacks`.
+    Fills(usize),
     Other,
 }
 
@@ -54,6 +59,7 @@ impl Conditions {
             least: 0,
             most: size,
             meets: Vec::new(),
+            lacks: Vec::new(),
             others: Vec::new(),
             empty: false,
             ground: family.ground.clone(),
@@ -86,6 +92,11 @@ impl Conditions {
                     labels.iter().filter_map(|label| places.get(label).copied()).collect();
                 self.meets.push(list.into_iter().collect());
             }
+            SubsetCondition::WeightOver { weights, over } => match list_of(weights, over, places) {
+                Some(List::Meets(list)) => self.meets.push(list),
+                Some(List::Lacks(list)) => self.lacks.push(list),
+                None => self.others.push(condition.clone()),
+            },
             other => self.others.push(other.clone()),
         }
     }
@@ -119,6 +130,10 @@ impl Conditions {
         if let Some(list) = self.meets.iter().position(misses) {
             return Some(Failure::Misses(list));
         }
+        let fills = |list: &Vec<usize>| list.iter().all(|&i| set[i]);
+        if let Some(list) = self.lacks.iter().position(fills) {
+            return Some(Failure::Fills(list));
+        }
         if self.others.is_empty() {
             return None;
         }
@@ -144,7 +159,7 @@ impl Conditions {
         let free = self.fixed.iter().filter(|f| **f == Fixed::Free).count();
         let below = self.least.saturating_sub(held);
         let above = (held + free).saturating_sub(self.most);
-        self.others.is_empty().then_some(below + above + self.meets.len())
+        self.others.is_empty().then_some(below + above + self.meets.len() + self.lacks.len())
     }
 
     /// The parts of what `fixed` leaves open in which a set other than `set`, which fails,
@@ -163,12 +178,49 @@ impl Conditions {
                 let list = self.meets[list].iter().copied();
                 split(fixed, list.filter(open).map(|i| (i, Fixed::In)))
             }
+            Failure::Fills(list) => {
+                let list = self.lacks[list].iter().copied();
+                split(fixed, list.filter(open).map(|i| (i, Fixed::Out)))
+            }
             Failure::Other => {
                 let other = |i: usize| (i, if set[i] { Fixed::Out } else { Fixed::In });
                 split(fixed, all.filter(open).map(other))
             }
         }
     }
+}
+
+/// A weight condition that says that a set holds, or lacks, an element of a list.
+enum List {
+    Meets(Vec<usize>),
+    Lacks(Vec<usize>),
+}
+
+/// The list behind `Σ_{i∈S} w_i > over` when all weights are 0 or one number w: it is met by
+/// one element when w > over ≥ 0, and by all but one when w < 0 and over is the sum of all.
+fn list_of(
+    weights: &[(LabelId, Number)],
+    over: &Number,
+    places: &BTreeMap<LabelId, usize>,
+) -> Option<List> {
+    let mut by_place: BTreeMap<usize, Number> = BTreeMap::new();
+    for (label, weight) in weights {
+        if let Some(&place) = places.get(label) {
+            *by_place.entry(place).or_insert(Number::ZERO) += weight;
+        }
+    }
+    by_place.retain(|_, weight| !weight.is_zero());
+    let first = by_place.values().next()?.clone();
+    if by_place.values().any(|weight| *weight != first) {
+        return None;
+    }
+    let count = Number::from(by_place.len());
+    let list = by_place.into_keys().collect();
+    if first > Number::ZERO {
+        return (*over >= Number::ZERO && *over < first).then_some(List::Meets(list));
+    }
+    let all = &first * &count;
+    (*over >= all && *over < all - first).then_some(List::Lacks(list))
 }
 
 /// Part k takes the k-th choice and the opposite of all before it.

@@ -100,7 +100,8 @@ fn is_cut(model: &Model, compiled: &Compiled) -> bool {
 pub(crate) fn halves(conditions: &Conditions) -> bool {
     let size = conditions.fixed.len();
     let free = conditions.fixed.iter().all(|fixed| *fixed == Fixed::Free);
-    let plain = conditions.meets.is_empty() && conditions.others.is_empty() && !conditions.empty;
+    let lists = conditions.meets.is_empty() && conditions.lacks.is_empty();
+    let plain = lists && conditions.others.is_empty() && !conditions.empty;
     let sizes = (1..=2).contains(&conditions.least)
         && conditions.most >= size / 2
         && conditions.most < size;

@@ -1,6 +1,6 @@
 //! At random fractional points a violated member is found exactly when there is one.
 
-use model::{LabelId, SubsetCondition, SubsetFamilyId};
+use model::{LabelId, Number, SubsetCondition, SubsetFamilyId};
 use rand_pcg::Pcg64Mcg;
 
 use super::build::{CROSSING, ENTERING, Graph, INSIDE, LEAVING, Shape, check, size};
@@ -51,6 +51,24 @@ fn cuts(nodes: u32) -> Vec<Vec<SubsetCondition>> {
         vec![size(0, nodes - 1), SubsetCondition::Contains(last)],
         vec![size(1, nodes - 1), SubsetCondition::Meets(vec![first, last])],
     ]
+}
+
+/// Cuts between terminals: S ∩ T ≠ ∅ and T ∖ S ≠ ∅, the second as the weight condition that
+/// fewer than |T| of T are in S.
+fn steiner(nodes: u32) -> Vec<Vec<SubsetCondition>> {
+    let terminals: Vec<LabelId> = (0..nodes).step_by(2).map(LabelId).collect();
+    let weights: Vec<_> = terminals.iter().map(|&t| (t, Number::from(-1))).collect();
+    let over = -Number::from(weights.len());
+    let lacks = SubsetCondition::WeightOver { weights, over };
+    let one = terminals.iter().map(|&t| (t, Number::from(2))).collect();
+    let holds = SubsetCondition::WeightOver { weights: one, over: Number::ONE };
+    vec![vec![SubsetCondition::Meets(terminals), lacks.clone()], vec![holds, lacks]]
+}
+
+#[test]
+fn between_terminals() {
+    sweep(&CROSSING, false, steiner);
+    sweep(&LEAVING, true, steiner);
 }
 
 #[test]

@@ -31,6 +31,7 @@ mod change;
 mod check;
 mod dual;
 mod lu;
+mod machine;
 mod outcome;
 mod primal;
 mod problem;

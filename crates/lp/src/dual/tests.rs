@@ -1,3 +1,5 @@
+//! The invariants of the dual method, step by step.
+
 use super::*;
 use crate::problem::{Col, Problem};
 use crate::random::half_to_one;

@@ -1,3 +1,5 @@
+//! Solves and updates against the matrix itself, on random bases.
+
 use super::*;
 use crate::tolerances::MARKOWITZ;
 

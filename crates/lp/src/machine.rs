@@ -1,0 +1,316 @@
+//! The machine behind a solve, one step at a time.
+//!
+//! *Evaluate* makes fresh factors of the basis in canonical order, with the given costs and bounds, and decides:
+//! optimal, primal feasible only (primal method) or not feasible (dual method, wrong-signed reduced costs shifted
+//! away first). Each method ends in another evaluation, so every outcome comes from the same place and its values
+//! depend on rows, bounds and basis alone. When numbers cannot be trusted: fresh factors, then the row or column is
+//! set aside, then the solve begins again with more care, at last it stops and says why.
+
+use crate::dual::{self, DualState, DualStep};
+use crate::outcome::{Outcome, Ray, StopReason};
+use crate::primal::{self, PrimalState, PrimalStep};
+use crate::simplex::Limits;
+use crate::state::{Core, Room};
+use crate::tolerances::{
+    DUAL, LAST_ATTEMPT, MARKOWITZ, MARKOWITZ_CAREFUL, PRIMAL, PRIMAL_RELATIVE,
+};
+
+/// The last attempt.
+const LAST: u32 = 3;
+
+/// Evaluations before a solve is begun again with more care.
+const ROUNDS: u32 = 20;
+
+/// Evaluations during which costs and bounds may be perturbed.
+const PERTURBED_ROUNDS: u32 = 4;
+
+/// Iterations between two looks at the cutoff.
+const CUTOFF_INTERVAL: u64 = 5;
+
+/// What the next step does.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Default)]
+enum Phase {
+    Evaluate,
+    Dual,
+    Primal,
+    #[default]
+    Finished,
+}
+
+/// Where a solve stands.
+#[derive(Clone, Debug, Default)]
+pub(crate) struct Machine {
+    phase: Phase,
+    limits: Limits,
+    dual: DualState,
+    primal: PrimalState,
+    /// What the last solve ended with.
+    pub(crate) outcome: Option<Outcome>,
+    round: u32,
+    attempt: u32,
+    began: u64,
+    attempt_began: u64,
+    next_cutoff_check: u64,
+}
+
+impl Machine {
+    /// Begins a solve from the current basis.
+    pub(crate) fn start(&mut self, core: &mut Core, limits: Limits) {
+        self.forget();
+        self.limits = limits;
+        self.attempt = 0;
+        self.began = core.iterations;
+        self.next_cutoff_check = core.iterations;
+        self.begin_attempt(core);
+    }
+
+    /// True until there is an outcome.
+    pub(crate) fn is_working(&self) -> bool {
+        self.phase != Phase::Finished
+    }
+
+    /// Drops the outcome, and a solve under way.
+    pub(crate) fn forget(&mut self) {
+        self.outcome = None;
+        self.phase = Phase::Finished;
+    }
+
+    fn finish(&mut self, outcome: Outcome) {
+        self.outcome = Some(outcome);
+        self.phase = Phase::Finished;
+    }
+
+    /// One step; always at least one tick.
+    pub(crate) fn step(&mut self, core: &mut Core) {
+        core.ticks += 1;
+        match self.phase {
+            Phase::Evaluate => self.evaluate(core),
+            Phase::Dual => self.step_dual(core),
+            Phase::Primal => self.step_primal(core),
+            Phase::Finished => {}
+        }
+    }
+
+    /// Sets how much violation counts as none.
+    fn set_room(&self, core: &mut Core) {
+        let largest =
+            core.cost.iter().fold(
+                0.0,
+                |largest: f64, cost| {
+                    if cost.abs() > largest { cost.abs() } else { largest }
+                },
+            );
+        let factor = if self.attempt < LAST { 1.0 } else { LAST_ATTEMPT };
+        core.room =
+            Room { primal: factor * PRIMAL, dual: factor * DUAL + PRIMAL_RELATIVE * largest };
+    }
+
+    /// Sets the care for an attempt.
+    fn begin_attempt(&mut self, core: &mut Core) {
+        self.round = 0;
+        self.attempt_began = core.iterations;
+        core.threshold = if self.attempt == 0 { MARKOWITZ } else { MARKOWITZ_CAREFUL };
+        self.set_room(core);
+        self.phase = Phase::Evaluate;
+    }
+
+    /// Begins again with more care: from the current basis, from the slack basis, with looser tolerances; then gives up.
+    fn fall_back(&mut self, core: &mut Core, reason: String) {
+        self.attempt += 1;
+        if self.attempt > LAST {
+            self.stop(core, StopReason::Numerical(reason));
+            return;
+        }
+        if self.attempt == 2 {
+            core.restore_given();
+            core.reset_to_slack_basis();
+        }
+        self.begin_attempt(core);
+    }
+
+    /// Fresh factors, given costs and bounds: decides what the basis is and what comes next.
+    fn evaluate(&mut self, core: &mut Core) {
+        self.round += 1;
+        core.restore_given();
+        core.settle_statuses();
+        if (0..core.variables()).any(|j| core.has_empty_range(j)) {
+            let multipliers = vec![0.0; core.rows()];
+            self.finish(Outcome::Infeasible(Ray { multipliers }));
+            return;
+        }
+        core.refactor_canonical();
+        debug_assert_eq!(core.check(), Ok(()));
+        core.compute_basic();
+        core.compute_reduced();
+        let tolerance = core.room.dual;
+        if !core.is_primal_feasible() && core.flip_to_right_side(tolerance) {
+            core.compute_basic();
+        }
+        let feasible = core.is_primal_feasible();
+        if feasible && core.worst_reduced() <= tolerance {
+            match core.solution() {
+                Ok(solution) => self.finish(Outcome::Optimal(solution)),
+                Err(reason) => self.fall_back(core, reason),
+            }
+        } else if self.round > ROUNDS {
+            self.fall_back(core, "the two methods undo each other's work".to_owned());
+        } else {
+            self.begin_method(core, feasible);
+        }
+    }
+
+    fn begin_method(&mut self, core: &mut Core, feasible: bool) {
+        let may_perturb = self.attempt == 0 && self.round <= PERTURBED_ROUNDS;
+        if feasible {
+            self.primal.may_perturb = may_perturb;
+            primal::begin(core, &mut self.primal);
+            self.phase = Phase::Primal;
+        } else {
+            self.dual.may_perturb = may_perturb;
+            self.dual.perturbed = false;
+            dual::begin(core, &mut self.dual);
+            self.phase = Phase::Dual;
+        }
+    }
+
+    /// Stops at a limit; true when it did.
+    fn stops(&mut self, core: &mut Core) -> bool {
+        let iterations = core.iterations;
+        if self.limits.iterations.is_some_and(|limit| iterations - self.began >= limit) {
+            self.stop(core, StopReason::Iterations);
+            return true;
+        }
+        let size = core.variables() as u64;
+        if iterations - self.attempt_began > 50 * size + 10_000 {
+            self.fall_back(core, "the iterations do not end".to_owned());
+            return true;
+        }
+        false
+    }
+
+    /// Stops when the dual bound of the given costs exceeds the cutoff; true when it did.
+    fn is_cut_off(&mut self, core: &mut Core) -> bool {
+        let Some(cutoff) = self.limits.cutoff else { return false };
+        if core.iterations < self.next_cutoff_check {
+            return false;
+        }
+        self.next_cutoff_check = core.iterations + CUTOFF_INTERVAL;
+        if core.working_objective() <= cutoff {
+            return false;
+        }
+        let duals = core.given_duals();
+        let bound = core.dual_bound(&duals);
+        if bound.is_some_and(|bound| bound > cutoff) {
+            self.finish(Outcome::Stopped {
+                reason: StopReason::Cutoff,
+                bound,
+                duals: core.released_duals(&duals),
+            });
+            return true;
+        }
+        self.next_cutoff_check = core.iterations + 4 * CUTOFF_INTERVAL;
+        false
+    }
+
+    /// Ends the solve with the bound of the given costs at the current basis.
+    fn stop(&mut self, core: &mut Core, reason: StopReason) {
+        let duals = core.given_duals();
+        let bound = core.dual_bound(&duals);
+        self.finish(Outcome::Stopped { reason, bound, duals: core.released_duals(&duals) });
+    }
+
+    fn step_dual(&mut self, core: &mut Core) {
+        if core.factor.is_worn() {
+            self.refresh_dual(core);
+            return;
+        }
+        if self.stops(core) || self.is_cut_off(core) {
+            return;
+        }
+        match dual::step(core, &mut self.dual) {
+            DualStep::Moved => {}
+            DualStep::Feasible => self.phase = Phase::Evaluate,
+            DualStep::Ray { position, sign } => match core.farkas_ray(sign) {
+                Some(ray) => self.finish(Outcome::Infeasible(ray)),
+                None => self.distrust_position(core, position),
+            },
+            DualStep::Unsound { position } => self.distrust_position(core, position),
+            DualStep::Exhausted => {
+                self.fall_back(core, "no violated row has a pivot that can be trusted".to_owned());
+            }
+        }
+    }
+
+    /// Makes fresh factors, or sets the row aside when they are fresh.
+    fn distrust_position(&mut self, core: &mut Core, position: u32) {
+        if core.factor.updates() > 0 {
+            self.refresh_dual(core);
+        } else {
+            self.dual.aside.push(position);
+        }
+    }
+
+    /// Fresh factors and values in the middle of the dual method.
+    fn refresh_dual(&mut self, core: &mut Core) {
+        core.refactor();
+        core.compute_basic();
+        core.compute_reduced();
+        for j in 0..core.variables() {
+            core.shift_if_wrong(j);
+        }
+        self.dual.aside.clear();
+    }
+
+    fn step_primal(&mut self, core: &mut Core) {
+        if core.factor.is_worn() {
+            self.refresh_primal(core);
+            return;
+        }
+        if self.stops(core) {
+            return;
+        }
+        match primal::step(core, &mut self.primal) {
+            PrimalStep::Moved => {}
+            PrimalStep::Optimal => self.phase = Phase::Evaluate,
+            PrimalStep::Ray { entering, direction } => self.end_on_ray(core, entering, direction),
+            PrimalStep::Unsound { entering } => self.distrust_entering(core, entering),
+            PrimalStep::Exhausted => {
+                self.fall_back(core, "no column has a pivot that can be trusted".to_owned());
+            }
+        }
+    }
+
+    /// Releases an unbounded ray when it stands with the given bounds.
+    fn end_on_ray(&mut self, core: &mut Core, entering: u32, direction: f64) {
+        if self.primal.perturbed {
+            self.round = PERTURBED_ROUNDS;
+            self.phase = Phase::Evaluate;
+            return;
+        }
+        match core.unbounded_ray(entering, direction) {
+            Ok((point, ray)) => self.finish(Outcome::Unbounded { point, ray }),
+            Err(_) if core.factor.updates() > 0 => self.refresh_primal(core),
+            Err(_) => self.primal.aside.push(entering),
+        }
+    }
+
+    /// Makes fresh factors, or sets the column aside when they are fresh.
+    fn distrust_entering(&mut self, core: &mut Core, entering: u32) {
+        if core.factor.updates() > 0 {
+            self.refresh_primal(core);
+        } else {
+            self.primal.aside.push(entering);
+        }
+    }
+
+    /// Fresh factors and values in the middle of the primal method; back to the evaluation when feasibility was lost.
+    fn refresh_primal(&mut self, core: &mut Core) {
+        core.refactor();
+        core.compute_basic();
+        core.compute_reduced();
+        self.primal.aside.clear();
+        if !core.is_primal_feasible() {
+            self.phase = Phase::Evaluate;
+        }
+    }
+}

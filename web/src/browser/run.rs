@@ -35,6 +35,8 @@ pub(crate) struct LaneRun {
     pub(crate) watchdog: Option<Timeout>,
     /// Nodes to search again after the worker was replaced.
     pub(crate) replay: Option<u32>,
+    /// Whether the root is solved: after that a request may fail, but not the rival.
+    rooted: bool,
     /// Whether the search shall begin as soon as the root is solved.
     pub(crate) run_at_root: bool,
     /// Workers lost since a person last asked for something.
@@ -51,6 +53,7 @@ impl LaneRun {
             inbox: VecDeque::new(),
             watchdog: None,
             replay: None,
+            rooted: false,
             run_at_root: false,
             losses: 0,
         }
@@ -70,6 +73,7 @@ impl LaneRun {
         self.tree = Shared::new(RefCell::default());
         self.inbox.clear();
         self.watchdog = None;
+        self.rooted = false;
         self.post(&Request::Load(Box::new(self.job.clone())));
         LaneAction::Load
     }
@@ -99,7 +103,10 @@ impl LaneRun {
         match reply {
             Reply::Understood(rival) => Some(LaneAction::Understood(*rival)),
             Reply::Progress(progress) => Some(LaneAction::Progress(progress)),
-            Reply::Root(root) => Some(LaneAction::Root(*root)),
+            Reply::Root(root) => {
+                self.rooted = true;
+                Some(LaneAction::Root(*root))
+            }
             Reply::Batch(events) => {
                 let mut tree = self.tree.borrow_mut();
                 tree.grow(&events);
@@ -107,6 +114,7 @@ impl LaneRun {
             }
             Reply::Paused(report) => Some(LaneAction::Paused(*report, self.settled())),
             Reply::Done(report) => Some(LaneAction::Done(*report, self.settled())),
+            Reply::Failed(error) if self.rooted => Some(LaneAction::Notice(error.message)),
             Reply::Failed(error) => {
                 self.watchdog = None;
                 Some(LaneAction::Failed(error))

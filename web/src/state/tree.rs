@@ -19,6 +19,8 @@ pub(crate) struct Node {
     pub(crate) stand: Option<f64>,
     /// Whether the bound is its own.
     pub(crate) own_bound: bool,
+    /// Whether its relaxation was solved: only then can its worker show it in full.
+    pub(crate) solved: bool,
     /// Its distance from the root.
     pub(crate) depth: u32,
     /// What made it.
@@ -97,6 +99,7 @@ impl Tree {
             state: NodeState::Open,
             stand: above.and_then(|node| node.stand),
             own_bound: false,
+            solved: false,
             depth: above.map_or(0, |node| node.depth + 1),
             branching,
             parent: parent.map_or(NONE, |at| at as u32),
@@ -126,8 +129,9 @@ impl Tree {
         self.set_state(number, state);
         self.tally.solved += 1;
         let Some(place) = self.place(number) else { return };
-        let Some(bound) = bound else { return };
         let node = &mut self.nodes[place];
+        node.solved = true;
+        let Some(bound) = bound else { return };
         (node.stand, node.own_bound) = (Some(bound), true);
         let (low, high) = self.tally.extent.unwrap_or((bound, bound));
         let low = if bound < low { bound } else { low };
@@ -183,6 +187,18 @@ impl Tree {
     /// The child of the same parent that came next.
     pub(crate) fn next_sibling(&self, place: usize) -> Option<usize> {
         some(self.nodes.get(place)?.next_sibling)
+    }
+
+    /// The branchings from the root to a node, in order.
+    pub(crate) fn path(&self, place: usize) -> Vec<Branching> {
+        let mut path = Vec::new();
+        let mut at = Some(place);
+        while let Some(node) = at.and_then(|at| self.nodes.get(at)) {
+            path.extend(node.branching.clone());
+            at = some(node.parent);
+        }
+        path.reverse();
+        path
     }
 
     /// The nearest node of the same depth above (`up`) or below. O(nodes).
@@ -267,6 +283,7 @@ pub(crate) mod tests {
         assert_eq!(tree.neighbour(1, false), Some(2));
         assert_eq!(tree.neighbour(1, true), None);
         assert_eq!(tree.parent(0), None);
+        assert_eq!((tree.path(2).len(), tree.path(0).len()), (1, 0));
     }
 
     #[test]

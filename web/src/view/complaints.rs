@@ -30,10 +30,13 @@ pub(crate) fn Complaints(props: &ComplaintsProps) -> Html {
     }
     let more = complaints.len().saturating_sub(SHOWN) as u64;
     html! {
-        <div class="complaints" id="complaints" role="group" aria-label="What could not be read">
+        <div
+            class={classes!("complaints", complaints.iter().any(|one| one.error).then_some("errors"))}
+            id="complaints" role="group" aria-label="Remarks on the text"
+        >
             <ol data-testid="complaints">
                 for (place, complaint) in complaints.iter().take(SHOWN).enumerate() {
-                    <li key={place} class={if complaint.error { "error" } else { "warning" }}>
+                    <li key={place} class={kind(complaint)}>
                         { one(&props.text.text, complaint) }
                     </li>
                 }
@@ -45,10 +48,21 @@ pub(crate) fn Complaints(props: &ComplaintsProps) -> Html {
     }
 }
 
+/// The kind of a complaint in a word.
+fn kind(complaint: &Complaint) -> &'static str {
+    if complaint.error {
+        "Error"
+    } else if complaint.is_note() {
+        "Note"
+    } else {
+        "Warning"
+    }
+}
+
 fn one(text: &str, complaint: &Complaint) -> Html {
     let (start, end) = (complaint.start, complaint.end);
     let show = Callback::from(move |_: MouseEvent| select(start, end));
-    let kind = if complaint.error { "Error" } else { "Note" };
+    let kind = kind(complaint);
     let place = format!("{kind}, line {}, column {}: ", complaint.line, complaint.column);
     let (before, marked, after) = quote(text, complaint);
     html! {

@@ -1,6 +1,7 @@
 //! One node in full: how it was reached, its bound, its relaxation drawn on the map, its values,
 //! and what it violates.
 
+use record::event::{Branching, NodeState};
 use record::message::{NodeDetail, RivalReport, ViolatedSubset};
 use report::number::{full, of, short};
 use wasm_bindgen::JsCast;
@@ -11,7 +12,7 @@ use crate::state::board::{Board, Selection};
 use crate::state::document::{Accepted, Document};
 use crate::state::pointer::Shared;
 use crate::state::words::{branching, node_state};
-use crate::view::hands::use_hands;
+use crate::view::hands::{Hands, use_hands};
 use crate::view::map::Map;
 use crate::view::rivals::HUES;
 use crate::view::values::Values;
@@ -41,13 +42,10 @@ pub(crate) struct InspectorProps {
 pub(crate) fn Inspector(props: &InspectorProps) -> Html {
     let hands = use_hands();
     let selection = props.board.selection;
-    let state = selection.and_then(|at| {
-        let tree = hands.as_ref()?.session.tree(at.lane)?;
-        let tree = tree.borrow();
-        Some(tree.nodes().get(tree.place(at.node)?)?.state)
-    });
-    use_effect_with((selection, state), move |(selection, _)| {
-        if let (Some(hands), Some(at)) = (hands, selection) {
+    let node = selection.and_then(|at| known(hands.as_ref()?, at));
+    let wanted = node.as_ref().filter(|node| node.solved).map(|node| node.state);
+    use_effect_with((selection, wanted), move |(selection, wanted)| {
+        if let (Some(hands), Some(at), Some(_)) = (hands, selection, wanted) {
             hands.session.inspect(at.lane, at.node);
         }
     });
@@ -62,10 +60,41 @@ pub(crate) fn Inspector(props: &InspectorProps) -> Html {
             <h2 id={HEADING} tabindex="-1">{ heading(at, place) }</h2>
             if let (Some(detail), Some(accepted)) = (props.board.detail.clone(), props.document.accepted.clone()) {
                 <Detail {detail} {accepted} rival={props.board.lane(at.lane).rival.clone()} />
+            } else if let Some(node) = node.filter(|node| !node.solved) {
+                { unsolved(&node, props.board.lane(at.lane).rival.as_deref()) }
             } else {
                 <p class="soft">{ "Asking the worker for this node…" }</p>
             }
         </section>
+    }
+}
+
+/// What the page knows of a node without its worker.
+struct Known {
+    state: NodeState,
+    solved: bool,
+    stand: Option<f64>,
+    path: Vec<Branching>,
+}
+
+fn known(hands: &Hands, at: Selection) -> Option<Known> {
+    let tree = hands.session.tree(at.lane)?;
+    let tree = tree.borrow();
+    let place = tree.place(at.node)?;
+    let node = tree.nodes().get(place)?;
+    let (state, solved, stand) = (node.state, node.solved, node.stand);
+    Some(Known { state, solved, stand, path: tree.path(place) })
+}
+
+fn unsolved(node: &Known, rival: Option<&RivalReport>) -> Html {
+    let bound = node.stand.map_or_else(String::new, |stand| {
+        format!(" Its parent's bound, {}, stands for it.", short(stand))
+    });
+    html! {
+        <div class="say">
+            <p>{ format!("This node is {}; its relaxation was not solved.{bound}", node_state(node.state)) }</p>
+            { path(&node.path, rival) }
+        </div>
     }
 }
 
@@ -104,7 +133,7 @@ fn Detail(props: &DetailProps) -> Html {
             <div class="say">
                 <p>{ sentence(detail) }</p>
                 { bound(detail) }
-                { path(detail, props.rival.as_deref()) }
+                { path(&detail.path, props.rival.as_deref()) }
                 { violated(&detail.violated, *set, &show) }
                 { ray(detail) }
             </div>
@@ -163,8 +192,8 @@ fn bound(detail: &NodeDetail) -> Html {
     }
 }
 
-fn path(detail: &NodeDetail, rival: Option<&RivalReport>) -> Html {
-    if detail.path.is_empty() {
+fn path(steps: &[Branching], rival: Option<&RivalReport>) -> Html {
+    if steps.is_empty() {
         return Html::default();
     }
     let columns = rival.map_or(&[][..], |rival| rival.column_names.as_slice());
@@ -172,7 +201,7 @@ fn path(detail: &NodeDetail, rival: Option<&RivalReport>) -> Html {
         <>
             <h3>{ "Branchings from the root" }</h3>
             <ol class="path small" data-testid="path">
-                for step in detail.path.iter() { <li>{ branching(step, columns) }</li> }
+                for step in steps.iter() { <li>{ branching(step, columns) }</li> }
             </ol>
         </>
     }

@@ -45,16 +45,14 @@ impl Compiler {
             println!("   rustup's toolchain has the wasm target");
             return Ok(Compiler::Rustup);
         }
-        if !DEBIAN_PACKAGES.iter().all(|name| packages::installed(name)) {
-            let mut add = Command::new("rustup");
-            add.args(["target", "add", TARGET]);
-            if within(FETCH_LIMIT, &mut add) && target_installed() {
-                println!("   rustup's toolchain has the wasm target now");
-                return Ok(Compiler::Rustup);
-            }
-            println!("   rustup cannot fetch the wasm target; Debian's compiler serves instead");
-            packages::ensure(&DEBIAN_PACKAGES, "to build the page")?;
+        let mut add = Command::new("rustup");
+        add.args(["target", "add", TARGET]);
+        if within(FETCH_LIMIT, &mut add) && target_installed() {
+            println!("   rustup's toolchain has the wasm target now");
+            return Ok(Compiler::Rustup);
         }
+        println!("   rustup cannot fetch the wasm target; Debian's compiler serves instead");
+        packages::ensure(&DEBIAN_PACKAGES, "to build the page")?;
         let debian = Self::debian()?;
         println!("   Debian's compiler, with the standard library built from its source");
         Ok(debian)

@@ -153,16 +153,27 @@ impl Browser {
     /// # Errors
     /// Those of the driver.
     pub async fn find_all(&self, role: &str, name: &str) -> Outcome<Vec<Element>> {
+        self.named(role, |found| found.contains(name)).await
+    }
+
+    /// All elements with this role that have no accessible name.
+    ///
+    /// # Errors
+    /// Those of the driver.
+    pub async fn nameless(&self, role: &str) -> Outcome<Vec<Element>> {
+        self.named(role, |found| found.trim().is_empty()).await
+    }
+
+    async fn named(&self, role: &str, fits: impl Fn(&str) -> bool) -> Outcome<Vec<Element>> {
         let document = self.protocol("DOM.getDocument", json!({ "depth": 0 })).await?;
         let query = json!({ "nodeId": document["root"]["nodeId"], "role": role });
         let found = self.protocol("Accessibility.queryAXTree", query).await?;
-        let named = |node: &&Value| {
-            node["ignored"] != true
-                && node["name"]["value"].as_str().unwrap_or_default().contains(name)
+        let fits = |node: &&Value| {
+            node["ignored"] != true && fits(node["name"]["value"].as_str().unwrap_or_default())
         };
         let nodes = found["nodes"].as_array().map(Vec::as_slice).unwrap_or_default();
         let ids: Vec<&Value> =
-            nodes.iter().filter(named).map(|node| &node["backendDOMNodeId"]).collect();
+            nodes.iter().filter(fits).map(|node| &node["backendDOMNodeId"]).collect();
         self.mark(&json!(ids)).await?;
         Ok(self.client.find_all(Locator::Css(&format!("[{MARK}]"))).await?)
     }

@@ -1,4 +1,25 @@
 //! The built page in Chromium. One browser a test, one test at a time.
 
+#[path = "page/lanes.rs"]
+mod lanes;
+
 #[path = "page/opening.rs"]
 mod opening;
+
+#[path = "page/pasting.rs"]
+mod pasting;
+
+#[path = "page/solving.rs"]
+mod solving;
+
+#[path = "page/nodes.rs"]
+mod nodes;
+
+#[path = "page/workers.rs"]
+mod workers;
+
+#[path = "page/answering.rs"]
+mod answering;
+
+#[path = "page/looks.rs"]
+mod looks;

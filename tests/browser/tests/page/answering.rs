@@ -1,0 +1,56 @@
+//! The page stays quick while long work runs.
+
+use hullward_tests_browser::Outcome;
+use hullward_tests_browser::visit::{Source, visit};
+use serde_json::json;
+
+use crate::lanes::{button, part, status};
+
+/// Milliseconds from a click on Stop to the lane's saying that it has stopped.
+const STOP: &str = "
+    const [stop, state, done] = arguments;
+    const sentence = document.querySelector(state);
+    const begun = performance.now();
+    new MutationObserver((_, observer) => {
+      if (!sentence.textContent.startsWith('stopped')) return;
+      observer.disconnect();
+      done(performance.now() - begun);
+    }).observe(sentence, { characterData: true, childList: true, subtree: true });
+    document.querySelector(stop).click();
+";
+
+const WATCH_TASKS: &str = "
+    globalThis.longTasks = [];
+    new PerformanceObserver((list) => {
+      for (const entry of list.getEntries()) longTasks.push(Math.round(entry.duration));
+    }).observe({ type: 'longtask' });
+";
+
+#[tokio::test(flavor = "multi_thread")]
+async fn stop_acts_within_a_tenth_of_a_second() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        status(browser, "A", "root solved").await?;
+        button(browser, "A", "run").await?.click().await?;
+        status(browser, "A", "searching").await?;
+        let places = vec![json!(part("A", "stop")), json!(part("A", "status"))];
+        let took = browser.script_async(STOP, places).await?;
+        assert!(took.as_f64().is_some_and(|took| took <= 100.0), "{took} ms");
+        Ok(())
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn no_task_of_the_page_is_long_while_a_tree_grows() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        for letter in ["A", "B", "C"] {
+            status(browser, letter, "root solved").await?;
+        }
+        browser.script(WATCH_TASKS).await?;
+        button(browser, "A", "run").await?.click().await?;
+        tokio::time::sleep(std::time::Duration::from_secs(3)).await;
+        assert_eq!(browser.script("return longTasks").await?, json!([]), "milliseconds");
+        Ok(())
+    })
+    .await
+}

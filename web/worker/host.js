@@ -1,0 +1,52 @@
+"use strict";
+// The worker's side of the page: the first message is the compiled engine, every later one a
+// request. Work is cut into slices, and each next slice is a message of its own (setTimeout would
+// wait for milliseconds, a promise would not let messages in), so that a request is heard between
+// two slices. A failure is told as a string; the page then replaces the worker.
+(() => {
+  const turn = new MessageChannel();
+  let host = null;
+  let planned = false;
+  let failed = false;
+
+  function guard(act) {
+    if (failed) return;
+    try {
+      act();
+    } catch (error) {
+      failed = true;
+      postMessage(`The engine failed: ${error}`);
+    }
+  }
+
+  function plan() {
+    if (planned) return;
+    planned = true;
+    turn.port2.postMessage(null);
+  }
+
+  function send() {
+    for (let bytes = host.take(); bytes !== undefined; bytes = host.take()) {
+      postMessage(bytes, [bytes.buffer]);
+    }
+  }
+
+  turn.port1.onmessage = () =>
+    guard(() => {
+      planned = false;
+      const busy = host.slice();
+      send();
+      if (busy) plan();
+    });
+
+  globalThis.onmessage = ({ data }) =>
+    guard(() => {
+      if (host === null) {
+        wasm_bindgen.initSync({ module: data });
+        host = new wasm_bindgen.Host();
+      } else {
+        host.receive(data);
+        plan();
+      }
+    });
+})();

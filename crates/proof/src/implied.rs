@@ -7,16 +7,20 @@ use model::Number;
 
 use crate::rows::{Bounds, ExactRows};
 
-/// Passes over the rows; each can only fill sides that are still infinite.
+/// Passes over the rows, there and back in turn, so that chains are followed either way; each
+/// only fills sides that are still infinite.
 const PASSES: usize = 6;
 
 /// The model's bounds with infinite sides filled where rows imply a finite one.
 /// `O(passes · non-zeros)` rational operations, none when all bounds are finite.
 pub(crate) fn bounds(rows: &ExactRows) -> Vec<Bounds> {
     let mut out = rows.bounds.clone();
-    for _ in 0..PASSES {
+    for turn in 0..PASSES {
         let finite = out.iter().all(|(lower, upper)| lower.is_some() && upper.is_some());
-        if finite || !pass(rows, &mut out) {
+        let count = rows.row_count();
+        let back = turn % 2 == 1;
+        let order = (0..count).map(|row| if back { count - 1 - row } else { row });
+        if finite || !pass(rows, order, &mut out) {
             break;
         }
     }
@@ -24,9 +28,9 @@ pub(crate) fn bounds(rows: &ExactRows) -> Vec<Bounds> {
 }
 
 /// One pass; whether a side was filled.
-fn pass(rows: &ExactRows, out: &mut [Bounds]) -> bool {
+fn pass(rows: &ExactRows, order: impl Iterator<Item = usize>, out: &mut [Bounds]) -> bool {
     let mut filled = false;
-    for row in 0..rows.row_count() {
+    for row in order {
         if let Some(side) = rows.rows[row].upper.clone() {
             filled |= from_side(rows, row, &side, false, out);
         }

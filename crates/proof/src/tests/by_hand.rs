@@ -140,6 +140,27 @@ fn coefficients_that_do_not_divide() {
     }
 }
 
+/// Bounds that only a chain of rows implies: x1 ≤ x2 + 1, …, x8 ≤ x9 + 1, x9 ≤ 0, all x ≥ 0.
+/// Even multipliers of 0 then prove that −x1 ≥ −8.
+#[test]
+fn chains_of_rows_bound_columns() {
+    let mut b = ModelBuilder::new("chain", Sense::Minimise);
+    for k in 0..9 {
+        let upper = (k == 8).then_some(0);
+        b.column(&[], &column(Some(0), upper, Number::from(-i64::from(k == 0)), false)).unwrap();
+    }
+    for k in 0..8 {
+        let entries = [(k, Number::from(1)), (k + 1, Number::from(-1))];
+        b.row(&[], row(&entries, None, Some(Number::from(1)))).unwrap();
+    }
+    let model = b.build();
+    let rows = ExactRows::new(&model);
+    assert_eq!(bound(&rows, &bounds(&model), &[]), Some(Number::from(-8)));
+    let mut wider = bounds(&model);
+    wider[8].1 = None;
+    assert_eq!(bound(&rows, &wider, &[]), None);
+}
+
 /// x + y ≥ 3 and x + y ≤ `most`, with 0 ≤ x, y and, if given, a common upper bound.
 fn pressed(most: i64, upper: Option<i64>) -> Model {
     let mut b = ModelBuilder::new("pressed", Sense::Minimise);

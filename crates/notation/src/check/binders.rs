@@ -194,7 +194,6 @@ impl Checker<'_> {
         {
             return self.graph_step(left, right, work);
         }
-        let subset_uses = self.subset_uses;
         let (set, roots) = self.set(right)?;
         if roots.is_empty() {
             let wanted = "a set to draw from";
@@ -205,7 +204,7 @@ impl Checker<'_> {
             return self.report(shapes::tuple_size(roots.len(), items.len(), left.span));
         }
         let pattern = self.pattern(&items, &roots, work)?;
-        self.push_over(pattern, set, left.span.to(right.span), subset_uses, work);
+        self.push_over(pattern, set, left.span.to(right.span), work);
         Some(())
     }
 
@@ -222,13 +221,12 @@ impl Checker<'_> {
             if other == name.text {
                 continue;
             }
-            let subset_uses = self.subset_uses;
             let (set, roots) = self.set(right)?;
             let [root] = roots[..] else {
                 return self.report(shapes::tuple_size(roots.len(), 1, span));
             };
             let slot = self.bind(&other, root);
-            self.push_over(vec![Pattern::Bind(slot)], set, span, subset_uses, work);
+            self.push_over(vec![Pattern::Bind(slot)], set, span, work);
         }
         Some(())
     }
@@ -240,10 +238,9 @@ impl Checker<'_> {
         pattern: Vec<Pattern>,
         set: Node,
         span: Span,
-        subset_uses: usize,
         work: &mut Quantifier<'_>,
     ) {
-        let over_subset = work.subsets && self.subset_uses > subset_uses;
+        let over_subset = work.subsets && names_subset(&set);
         if !over_subset {
             work.steps.push(Step::Over { pattern, set, span });
             return;
@@ -329,8 +326,7 @@ impl Checker<'_> {
             return self.report(shapes::tuple_size(slots.len(), items.len(), left.span));
         }
         work.steps.extend(steps);
-        let mut at = before;
-        for (item, slot) in items.iter().zip(slots) {
+        for (at, (item, slot)) in (before..).zip(items.iter().zip(slots)) {
             match self.new_name(item, work).map(|n| n.text.clone()) {
                 Some(text) => {
                     work.pending.retain(|(n, _)| *n != text);
@@ -342,7 +338,6 @@ impl Checker<'_> {
                     work.steps.push(Step::When(same, item.span));
                 }
             }
-            at += 1;
         }
         Some(())
     }
@@ -397,5 +392,14 @@ impl Checker<'_> {
         own || super::usage::children(expression)
             .into_iter()
             .any(|child| self.mentions_pending(child, work))
+    }
+}
+
+/// Whether a set is made from the quantified subset.
+fn names_subset(set: &Node) -> bool {
+    match set {
+        Node::Subset => true,
+        Node::SetOperation(_, a, b) => names_subset(a) || names_subset(b),
+        _ => false,
     }
 }

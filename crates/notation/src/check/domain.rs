@@ -103,10 +103,9 @@ impl<'t> Checker<'t> {
                 usage::of_clause(clause).chain([body.as_ref()]).all(|e| self.is_constant(e, &inner))
             }
             Kind::Name(name) | Kind::Call(name, _) => {
-                let known = bound.contains(name.text.as_str())
+                bound.contains(name.text.as_str())
                     || matches!(self.names.get(&name.text), Some(Global::Symbol(_)))
-                    || self.splits_into_known(&name.text, bound);
-                known
+                    || self.splits_into_known(&name.text, bound)
             }
             _ => {
                 usage::children(expression).into_iter().all(|child| self.is_constant(child, bound))

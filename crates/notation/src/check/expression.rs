@@ -298,17 +298,8 @@ impl Checker<'_> {
             return self.report(message::indices(&name.text, roots.len(), slots.len(), span));
         }
         for (place, (&wanted, &found)) in roots.iter().zip(&found).enumerate() {
-            if let (Root::Set(a), Root::Set(b)) = (wanted, found)
-                && a != b
-            {
-                let (wanted, found) = (self.root_name(wanted), self.root_name(found));
-                return self.report(message::wrong_set(
-                    &name.text,
-                    place + 1,
-                    &wanted,
-                    &found,
-                    span,
-                ));
+            if !self.fits((name, place + 1), wanted, found, span) {
+                return None;
             }
         }
         let indices: Vec<Node> = slots.into_iter().map(|s: Slot| Node::Slot(s)).collect();

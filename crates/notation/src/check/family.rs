@@ -40,11 +40,7 @@ impl<'t> Checker<'t> {
         if line.left.len() > 1 {
             return self.report(message::relation(line.left[1].span));
         }
-        let steps = self.quantify(&line.clauses, &carriers, true);
-        let steps = match steps {
-            Some(steps) => steps,
-            None => return None,
-        };
+        let steps = self.quantify(&line.clauses, &carriers, true)?;
         let rows = self.rows(line, role);
         let (tuple, roots) = self.tuple_of_family();
         let subset = self.subset.take();

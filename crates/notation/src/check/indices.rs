@@ -33,20 +33,27 @@ impl Checker<'_> {
                 sound = false;
                 continue;
             };
-            sound &= self.fits(name, place, wanted, found, index.span);
+            sound &= self.fits((name, place + 1), wanted, found, index.span);
             nodes.push(node);
         }
         sound.then_some((nodes, power))
     }
 
-    fn fits(&mut self, name: &Name, place: usize, wanted: Root, found: Root, span: Span) -> bool {
+    /// Whether an index from `found` may stand at a place (from 1) that takes one from `wanted`.
+    pub(super) fn fits(
+        &mut self,
+        place: (&Name, usize),
+        wanted: Root,
+        found: Root,
+        span: Span,
+    ) -> bool {
         let (Root::Set(a), Root::Set(b)) = (wanted, found) else { return true };
         if a == b {
             return true;
         }
         let (wanted, found) = (self.root_name(wanted), self.root_name(found));
-        let _: Option<()> =
-            self.report(message::wrong_set(&name.text, place + 1, &wanted, &found, span));
+        let diagnostic = message::wrong_set(&place.0.text, place.1, &wanted, &found, span);
+        let _: Option<()> = self.report(diagnostic);
         false
     }
 

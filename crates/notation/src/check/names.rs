@@ -194,7 +194,7 @@ fn text(piece: &Piece) -> String {
 pub(super) fn splits(word: &str, known: &dyn Fn(&str) -> bool) -> Vec<Vec<Piece>> {
     let ends: Vec<usize> = word.char_indices().map(|(i, _)| i).chain([word.len()]).collect();
     let n = ends.len() - 1;
-    if n > SPLIT_LIMIT || n < 2 {
+    if !(2..=SPLIT_LIMIT).contains(&n) {
         return Vec::new();
     }
     // readable[i]: the rest from character i can be read

@@ -78,17 +78,17 @@ fn visit<'t>(expression: &'t Expression, found: &mut BTreeMap<&'t str, usize>) {
                 left = operand;
             }
         }
-        Kind::Additive(first, rest) => {
-            if rest.iter().any(|(op, _)| matches!(op, Additive::Union | Additive::Difference)) {
-                mark(first, 1, found);
-                rest.iter().for_each(|(_, operand)| mark(operand, 1, found));
-            }
+        Kind::Additive(first, rest)
+            if rest.iter().any(|(op, _)| matches!(op, Additive::Union | Additive::Difference)) =>
+        {
+            mark(first, 1, found);
+            rest.iter().for_each(|(_, operand)| mark(operand, 1, found));
         }
-        Kind::Multiplicative(first, rest) => {
-            if rest.iter().any(|(op, _)| matches!(op, Multiplicative::Intersection)) {
-                mark(first, 1, found);
-                rest.iter().for_each(|(_, operand)| mark(operand, 1, found));
-            }
+        Kind::Multiplicative(first, rest)
+            if rest.iter().any(|(op, _)| matches!(op, Multiplicative::Intersection)) =>
+        {
+            mark(first, 1, found);
+            rest.iter().for_each(|(_, operand)| mark(operand, 1, found));
         }
         Kind::Function(Function::Bars, items) => {
             if let Some(Expression { kind: Kind::Name(name), .. }) = items.first()

@@ -61,14 +61,6 @@ pub(crate) fn empty_domain(name: &str, span: Span) -> Diagnostic {
     Diagnostic::warning("row.empty-domain", span, message)
 }
 
-pub(crate) fn unbounded(name: &str, span: Span) -> Diagnostic {
-    let message = format!(
-        "{} stands in no row, and the objective improves without end along it",
-        short_tuple(name)
-    );
-    Diagnostic::warning("row.unbounded", span, message)
-}
-
 pub(crate) fn objective_infinite(span: Span) -> Diagnostic {
     Diagnostic::error("row.infinite", span, "∞ can stand only as a bound")
 }

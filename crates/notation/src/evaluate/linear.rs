@@ -18,49 +18,77 @@ pub(crate) struct Linear {
     pub(crate) loose: Vec<(Guard, Number)>,
 }
 
+/// What a piece of a form is multiplied by, and when it counts.
+#[derive(Debug, Clone)]
+pub(crate) struct Scale {
+    factor: Number,
+    guard: Guard,
+}
+
+impl Scale {
+    /// As it stands.
+    pub(crate) fn one() -> Self {
+        Self { factor: Number::ONE, guard: Guard::ALWAYS }
+    }
+
+    pub(crate) fn minus_one() -> Self {
+        Self::one().negative()
+    }
+
+    fn negative(&self) -> Self {
+        Self { factor: -self.factor.clone(), guard: self.guard }
+    }
+
+    fn times(&self, factor: &Number) -> Self {
+        Self { factor: &self.factor * factor, guard: self.guard }
+    }
+
+    /// Also where `guard` holds.
+    fn when(&self, guard: Guard) -> Option<Self> {
+        Some(Self { factor: self.factor.clone(), guard: self.guard.and(guard)? })
+    }
+}
+
 impl Evaluator {
-    /// Adds `factor · node`, where `guard` holds, to `into`.
+    /// Adds `scale · node` to `into`.
     pub(crate) fn linear(
         &self,
         node: &Node,
-        factor: &Number,
-        guard: Guard,
+        scale: &Scale,
         env: &mut Environment,
         into: &mut Linear,
     ) -> Evaluated<()> {
         match node {
             Node::Variable(number, indices, span) => {
                 let column = self.column(*number, indices, *span, env)?;
-                into.terms.push((column, guard, factor.clone()));
+                into.terms.push((column, scale.guard, scale.factor.clone()));
             }
-            Node::Negative(inner) => self.linear(inner, &-factor.clone(), guard, env, into)?,
+            Node::Negative(inner) => self.linear(inner, &scale.negative(), env, into)?,
             Node::Add(terms) => {
+                let negative = scale.negative();
                 for (minus, term) in terms {
-                    let factor = if *minus { -factor.clone() } else { factor.clone() };
-                    self.linear(term, &factor, guard, env, into)?;
+                    self.linear(term, if *minus { &negative } else { scale }, env, into)?;
                 }
             }
-            Node::Multiply(factors) => self.product(factors, factor, guard, env, into)?,
+            Node::Multiply(factors) => self.product(factors, scale, env, into)?,
             Node::Divide(over, under, span) => {
                 let under = self.number(under, env)?;
                 if under.is_zero() {
                     return fail(shapes::division_by_zero(*span));
                 }
-                self.linear(over, &(factor / under), guard, env, into)?;
+                self.linear(over, &scale.times(&(Number::ONE / under)), env, into)?;
             }
             Node::Over(crate::syntax::Big::Sum, steps, body, span) => {
-                self.each(steps, env, |this, env, inner| match guard.and(inner) {
-                    Some(guard) if guard.value() == Some(false) => Ok(()),
-                    Some(guard) => this.linear(body, factor, guard, env, into),
+                self.each(steps, env, |this, env, inner| match scale.when(inner) {
+                    Some(scale) if scale.guard.value() == Some(false) => Ok(()),
+                    Some(scale) => this.linear(body, &scale, env, into),
                     None => fail(subsets::nonlinear(*span)),
                 })?;
             }
-            Node::Size(set) if self.depends_on_subset(set) => {
-                self.size(set, factor, guard, env, into)?
-            }
+            Node::Size(set) if self.depends_on_subset(set) => self.size(set, scale, env, into)?,
             _ => {
-                let value = self.number(node, env)? * factor;
-                into.add(guard, value);
+                let value = self.number(node, env)? * &scale.factor;
+                into.add(scale.guard, value);
             }
         }
         Ok(())
@@ -71,26 +99,25 @@ impl Evaluator {
     fn product(
         &self,
         factors: &[Node],
-        factor: &Number,
-        guard: Guard,
+        scale: &Scale,
         env: &mut Environment,
         into: &mut Linear,
     ) -> Evaluated<()> {
         let (constant, open): (Vec<&Node>, Vec<&Node>) =
             factors.iter().partition(|f| self.is_plain(f));
-        let mut scale = factor.clone();
+        let mut scale = scale.clone();
         for node in constant {
-            scale *= self.number(node, env)?;
+            scale.factor *= self.number(node, env)?;
         }
         match open[..] {
-            [] => into.add(guard, scale),
-            [only] => self.linear(only, &scale, guard, env, into)?,
+            [] => into.add(scale.guard, scale.factor),
+            [only] => self.linear(only, &scale, env, into)?,
             [first, ref rest @ ..] => {
                 let mut product = Linear::default();
-                self.linear(first, &scale, guard, env, &mut product)?;
+                self.linear(first, &scale, env, &mut product)?;
                 for node in rest {
                     let mut next = Linear::default();
-                    self.linear(node, &Number::ONE, Guard::ALWAYS, env, &mut next)?;
+                    self.linear(node, &Scale::one(), env, &mut next)?;
                     product = multiply(&product, &next)?;
                 }
                 into.terms.extend(product.terms);
@@ -124,14 +151,13 @@ impl Evaluator {
     fn size(
         &self,
         set: &Node,
-        factor: &Number,
-        guard: Guard,
+        scale: &Scale,
         env: &mut Environment,
         into: &mut Linear,
     ) -> Evaluated<()> {
         for (element, inside) in self.members_by_subset(set, env)? {
-            match guard.and(Guard::member(element, inside)) {
-                Some(guard) => into.add(guard, factor.clone()),
+            match scale.when(Guard::member(element, inside)) {
+                Some(scale) => into.add(scale.guard, scale.factor),
                 None => return fail(subsets::nonlinear(Span::default())),
             }
         }

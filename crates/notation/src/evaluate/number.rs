@@ -63,7 +63,7 @@ impl Evaluator {
                 }
                 Ok(Number::from(self.set(set, env)?.len()))
             }
-            Node::Over(big, steps, body, span) => self.over(*big, steps, body, *span, env),
+            Node::Over(big, steps, body, span) => self.over((*big, *span), steps, body, env),
             _ => self.plain(node, env),
         }
     }
@@ -106,10 +106,9 @@ impl Evaluator {
 
     fn over(
         &self,
-        big: Big,
+        (big, span): (Big, Span),
         steps: &[Step],
         body: &Node,
-        span: Span,
         env: &mut Environment,
     ) -> Evaluated<Number> {
         let mut total: Option<Number> = None;
@@ -122,20 +121,8 @@ impl Evaluator {
                 (None, _) => value,
                 (Some(sum), Big::Sum) => sum + value,
                 (Some(product), Big::Product) => product * value,
-                (Some(best), Big::Least) => {
-                    if value < best {
-                        value
-                    } else {
-                        best
-                    }
-                }
-                (Some(best), Big::Greatest) => {
-                    if value > best {
-                        value
-                    } else {
-                        best
-                    }
-                }
+                (Some(best), Big::Least) => best.min(value),
+                (Some(best), Big::Greatest) => best.max(value),
             });
             Ok(())
         })?;

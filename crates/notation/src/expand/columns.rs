@@ -45,7 +45,7 @@ impl DraftColumn {
         match set {
             NumberSet::Real | NumberSet::Integer => self.free = true,
             NumberSet::RealNonNegative | NumberSet::IntegerNonNegative => {
-                self.at_least(Number::ZERO)
+                self.at_least(Number::ZERO);
             }
             NumberSet::IntegerPositive => self.at_least(Number::ONE),
             NumberSet::Binary => {

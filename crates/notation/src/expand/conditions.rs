@@ -6,13 +6,16 @@ use model::{LabelId, Number, SubsetCondition};
 use super::Expansion;
 use super::subsets::weights;
 use crate::diagnostic::subsets as message;
-use crate::evaluate::{Element, Evaluated, Guard, Linear, Set, fail};
+use crate::evaluate::{Element, Evaluated, Linear, Scale, Set, fail};
 use crate::place::Span;
 use crate::plan::{Node, SubsetPlan};
 use crate::syntax::Relation;
 
 /// What is gathered of one quantifier.
-struct Gathered {
+struct Gathered<'g> {
+    ground: &'g Set,
+    /// The condition at hand.
+    span: Span,
     at_least: u32,
     at_most: u32,
     others: Vec<SubsetCondition>,
@@ -29,13 +32,16 @@ impl Expansion {
     ) -> Evaluated<Option<Vec<SubsetCondition>>> {
         let all = u32::try_from(ground.len()).unwrap_or(u32::MAX);
         let mut gathered = Gathered {
+            ground,
+            span: subset.span,
             at_least: 0,
             at_most: if subset.proper { all.saturating_sub(1) } else { all },
             others: Vec::new(),
             impossible: subset.proper && all == 0,
         };
         for (node, span) in &subset.conditions {
-            let read = self.condition(node, *span, ground, &mut gathered);
+            gathered.span = *span;
+            let read = self.condition(node, &mut gathered);
             read.map_err(|d| crate::evaluate::placed(d, *span))?;
         }
         if gathered.impossible || gathered.at_least > gathered.at_most {
@@ -49,65 +55,53 @@ impl Expansion {
         Ok(Some(conditions))
     }
 
-    fn condition(
-        &mut self,
-        node: &Node,
-        span: Span,
-        ground: &Set,
-        into: &mut Gathered,
-    ) -> Evaluated<()> {
+    fn condition(&mut self, node: &Node, into: &mut Gathered<'_>) -> Evaluated<()> {
         match node {
             Node::All(items) => {
                 for item in items {
-                    self.condition(item, span, ground, into)?;
+                    self.condition(item, into)?;
                 }
                 Ok(())
             }
-            Node::Not(inner) => self.negated(inner, span, ground, into),
+            Node::Not(inner) => self.negated(inner, into),
             Node::Compare(relation, a, b) => match (a.as_ref(), b.as_ref()) {
                 (Node::Modulo(inner, two, _), rest) | (rest, Node::Modulo(inner, two, _)) => {
-                    self.remainder(*relation, inner, two, rest, span, into)
+                    self.remainder((*relation, rest), inner, two, into)
                 }
-                _ => self.comparison(*relation, a, b, span, ground, into),
+                _ => self.comparison(*relation, a, b, into),
             },
-            Node::Parity(odd, inner, _) => self.parity(*odd, inner, span, into),
+            Node::Parity(odd, inner, _) => self.parity(*odd, inner, into),
             Node::Member(inside, tuple, set) if matches!(**set, Node::Subset) => {
                 let element = self.evaluator.tuple(tuple, &mut self.env)?[0];
-                self.belongs(element, *inside, ground, into);
+                self.belongs(element, *inside, into);
                 Ok(())
             }
-            Node::Sets(relation, a, b) => self.sets(*relation, a, b, span, ground, into),
+            Node::Sets(relation, a, b) => self.sets(*relation, a, b, into),
             Node::Clique(set, edges) if matches!(**set, Node::Subset) => {
                 let edges = self.evaluator.set(edges, &mut self.env)?;
                 let pairs = edges.iter().map(|pair| (self.label(pair[0]), self.label(pair[1])));
                 into.others.push(SubsetCondition::Clique(pairs.collect()));
                 Ok(())
             }
-            Node::Any(items) => self.meets_one(items, span, ground, into),
-            _ => fail(message::condition(span)),
+            Node::Any(items) => self.meets_one(items, into),
+            _ => fail(message::condition(into.span)),
         }
     }
 
-    fn negated(
-        &mut self,
-        inner: &Node,
-        span: Span,
-        ground: &Set,
-        into: &mut Gathered,
-    ) -> Evaluated<()> {
+    fn negated(&mut self, inner: &Node, into: &mut Gathered<'_>) -> Evaluated<()> {
         let turned = match inner {
             Node::Member(inside, tuple, set) => Node::Member(!inside, tuple.clone(), set.clone()),
             Node::Parity(odd, inner, span) => Node::Parity(!odd, inner.clone(), *span),
             Node::Sets(Relation::Equal, a, b) => {
                 Node::Sets(Relation::NotEqual, a.clone(), b.clone())
             }
-            _ => return fail(message::condition(span)),
+            _ => return fail(message::condition(into.span)),
         };
-        self.condition(&turned, span, ground, into)
+        self.condition(&turned, into)
     }
 
-    fn belongs(&mut self, element: Element, inside: bool, ground: &Set, into: &mut Gathered) {
-        match (ground.contains(&[element]), inside) {
+    fn belongs(&mut self, element: Element, inside: bool, into: &mut Gathered<'_>) {
+        match (into.ground.contains(&[element]), inside) {
             (true, true) => into.others.push(SubsetCondition::Contains(self.label(element))),
             (true, false) => into.others.push(SubsetCondition::Avoids(self.label(element))),
             (false, true) => into.impossible = true,
@@ -116,29 +110,23 @@ impl Expansion {
     }
 
     /// `i ∈ S ∨ j ∈ S`.
-    fn meets_one(
-        &mut self,
-        items: &[Node],
-        span: Span,
-        ground: &Set,
-        into: &mut Gathered,
-    ) -> Evaluated<()> {
+    fn meets_one(&mut self, items: &[Node], into: &mut Gathered<'_>) -> Evaluated<()> {
         let mut elements = Vec::with_capacity(items.len());
         for item in items {
             let Node::Member(true, tuple, set) = item else {
-                return fail(message::condition(span));
+                return fail(message::condition(into.span));
             };
             if !matches!(**set, Node::Subset) {
-                return fail(message::condition(span));
+                return fail(message::condition(into.span));
             }
             elements.push(self.evaluator.tuple(tuple, &mut self.env)?[0]);
         }
-        self.meets(&elements, ground, into);
+        self.meets(&elements, into);
         Ok(())
     }
 
-    fn meets(&mut self, elements: &[Element], ground: &Set, into: &mut Gathered) {
-        let known = elements.iter().filter(|&&e| ground.contains(&[e]));
+    fn meets(&mut self, elements: &[Element], into: &mut Gathered<'_>) {
+        let known = elements.iter().filter(|&&e| into.ground.contains(&[e]));
         let labels: Vec<LabelId> = known.map(|&e| self.label(e)).collect();
         if labels.is_empty() {
             into.impossible = true;
@@ -148,27 +136,20 @@ impl Expansion {
     }
 
     /// The weights and the constant of a number that depends on the subset.
-    fn additive(
-        &mut self,
-        node: &Node,
-        span: Span,
-        ground: &Set,
-    ) -> Evaluated<(Vec<Number>, Number)> {
+    fn additive(&mut self, node: &Node, into: &Gathered<'_>) -> Evaluated<(Vec<Number>, Number)> {
         let mut form = Linear::default();
-        self.evaluator.linear(node, &Number::ONE, Guard::ALWAYS, &mut self.env, &mut form)?;
-        weights(&form.loose, form.constant, ground)
-            .map_or_else(|| fail(message::condition(span)), Ok)
+        self.evaluator.linear(node, &Scale::one(), &mut self.env, &mut form)?;
+        weights(&form.loose, form.constant, into.ground)
+            .map_or_else(|| fail(message::condition(into.span)), Ok)
     }
 
     /// `a mod 2 = 1`.
     fn remainder(
         &mut self,
-        relation: Relation,
+        (relation, rest): (Relation, &Node),
         inner: &Node,
         two: &Node,
-        rest: &Node,
-        span: Span,
-        into: &mut Gathered,
+        into: &mut Gathered<'_>,
     ) -> Evaluated<()> {
         let two = self.evaluator.number(two, &mut self.env)?;
         let rest = self.evaluator.number(rest, &mut self.env)?;
@@ -176,29 +157,18 @@ impl Expansion {
         let equal = match relation {
             Relation::Equal => true,
             Relation::NotEqual => false,
-            _ => return fail(message::condition(span)),
+            _ => return fail(message::condition(into.span)),
         };
         match bit {
-            Some(bit) if two == Number::from(2) => {
-                self.parity((bit == 1) == equal, inner, span, into)
-            }
-            _ => fail(message::condition(span)),
+            Some(bit) if two == Number::from(2) => self.parity((bit == 1) == equal, inner, into),
+            _ => fail(message::condition(into.span)),
         }
     }
 
-    fn parity(
-        &mut self,
-        odd: bool,
-        inner: &Node,
-        span: Span,
-        into: &mut Gathered,
-    ) -> Evaluated<()> {
-        let Some(ground) = self.evaluator.ground.clone() else {
-            return fail(message::condition(span));
-        };
-        let (weights, constant) = self.additive(inner, span, &ground)?;
+    fn parity(&mut self, odd: bool, inner: &Node, into: &mut Gathered<'_>) -> Evaluated<()> {
+        let (weights, constant) = self.additive(inner, into)?;
         if weights.iter().any(|w| *w != Number::ONE) || !constant.is_int() {
-            return fail(message::condition(span));
+            return fail(message::condition(into.span));
         }
         let shifted = constant.numerator() % 2_u8 != 0_u8;
         into.others.push(SubsetCondition::Odd(odd != shifted));
@@ -210,18 +180,16 @@ impl Expansion {
         relation: Relation,
         a: &Node,
         b: &Node,
-        span: Span,
-        ground: &Set,
-        into: &mut Gathered,
+        into: &mut Gathered<'_>,
     ) -> Evaluated<()> {
         let difference = Node::Add(vec![(false, a.clone()), (true, b.clone())]);
-        let (weights, constant) = self.additive(&difference, span, ground)?;
+        let (weights, constant) = self.additive(&difference, into)?;
         let first = weights.first().cloned().unwrap_or_default();
         let uniform = weights.iter().all(|w| *w == first) && !first.is_zero();
-        if uniform || ground.is_empty() {
+        if uniform || into.ground.is_empty() {
             let scale = if first.is_zero() { Number::ONE } else { first };
             let relation = if scale < Number::ZERO { turned(relation) } else { relation };
-            return size(relation, &(-constant / scale), ground, span, into);
+            return size(relation, &(-constant / scale), into);
         }
         // Σ w + constant ⋛ 0
         let negative = || weights.iter().map(|w| -w.clone()).collect::<Vec<_>>();
@@ -237,9 +205,9 @@ impl Expansion {
                 let over = just_below(&weights, &constant);
                 (weights, over)
             }
-            _ => return fail(message::condition(span)),
+            _ => return fail(message::condition(into.span)),
         };
-        let labels = ground.iter().map(|member| self.label(member[0])).collect::<Vec<_>>();
+        let labels = into.ground.iter().map(|member| self.label(member[0])).collect::<Vec<_>>();
         let weights = labels.into_iter().zip(weights).collect();
         into.others.push(SubsetCondition::WeightOver { weights, over });
         Ok(())
@@ -251,29 +219,27 @@ impl Expansion {
         relation: Relation,
         a: &Node,
         b: &Node,
-        span: Span,
-        ground: &Set,
-        into: &mut Gathered,
+        into: &mut Gathered<'_>,
     ) -> Evaluated<()> {
         let (own, other, on_left) =
             match (self.evaluator.depends_on_subset(a), self.evaluator.depends_on_subset(b)) {
                 (true, false) => (a, b, true),
                 (false, true) => (b, a, false),
-                _ => return fail(message::condition(span)),
+                _ => return fail(message::condition(into.span)),
             };
         let other = self.evaluator.set(other, &mut self.env)?;
         let own_bare = matches!(own, Node::Subset);
-        let all: Vec<Element> = ground.iter().map(|member| member[0]).collect();
+        let all: Vec<Element> = into.ground.iter().map(|member| member[0]).collect();
         match (relation, on_left) {
             (Relation::Equal | Relation::NotEqual, _) if other.is_empty() => {
                 let members = self.evaluator.members_by_subset(own, &mut self.env)?;
-                self.emptiness(&members, relation == Relation::NotEqual, ground, into);
+                self.emptiness(&members, relation == Relation::NotEqual, into);
             }
             (Relation::NotEqual, _) if own_bare => {
                 let whole =
-                    other.len() == ground.len() && all.iter().all(|&e| other.contains(&[e]));
+                    other.len() == into.ground.len() && all.iter().all(|&e| other.contains(&[e]));
                 if !whole {
-                    return fail(message::condition(span));
+                    return fail(message::condition(into.span));
                 }
                 into.at_most = into
                     .at_most
@@ -281,40 +247,34 @@ impl Expansion {
             }
             (Relation::SubsetOrEqual, true) if own_bare => {
                 for &element in all.iter().filter(|&&e| !other.contains(&[e])) {
-                    self.belongs(element, false, ground, into);
+                    self.belongs(element, false, into);
                 }
             }
             (Relation::SubsetOrEqual, false) if own_bare => {
                 for member in other.iter() {
-                    self.belongs(member[0], true, ground, into);
+                    self.belongs(member[0], true, into);
                 }
             }
-            _ => return fail(message::condition(span)),
+            _ => return fail(message::condition(into.span)),
         }
         Ok(())
     }
 
     /// A set whose members are in it by their membership in S is empty, or is not.
-    fn emptiness(
-        &mut self,
-        members: &[(Element, bool)],
-        wanted: bool,
-        ground: &Set,
-        into: &mut Gathered,
-    ) {
+    fn emptiness(&mut self, members: &[(Element, bool)], wanted: bool, into: &mut Gathered<'_>) {
         if !wanted {
             for &(element, inside) in members {
-                self.belongs(element, !inside, ground, into);
+                self.belongs(element, !inside, into);
             }
             return;
         }
         let in_s: Vec<Element> =
             members.iter().filter(|(_, inside)| *inside).map(|(e, _)| *e).collect();
-        if in_s.len() == ground.len() && !ground.is_empty() {
+        if in_s.len() == into.ground.len() && !into.ground.is_empty() {
             into.at_least = into.at_least.max(1);
         } else if in_s.len() == members.len() {
-            self.meets(&in_s, ground, into);
-        } else if members.iter().all(|(e, _)| ground.contains(&[*e])) {
+            self.meets(&in_s, into);
+        } else if members.iter().all(|(e, _)| into.ground.contains(&[*e])) {
             // T ∖ S ≠ ∅: fewer than |T| of T are in S
             let weights: Vec<_> =
                 members.iter().map(|&(e, _)| (self.label(e), -Number::ONE)).collect();
@@ -325,14 +285,8 @@ impl Expansion {
 }
 
 /// `|S| ⋛ k`.
-fn size(
-    relation: Relation,
-    bound: &Number,
-    ground: &Set,
-    span: Span,
-    into: &mut Gathered,
-) -> Evaluated<()> {
-    let all = u32::try_from(ground.len()).unwrap_or(u32::MAX);
+fn size(relation: Relation, bound: &Number, into: &mut Gathered<'_>) -> Evaluated<()> {
+    let all = u32::try_from(into.ground.len()).unwrap_or(u32::MAX);
     let narrow =
         |n: IBig| if n < IBig::ZERO { None } else { Some(u32::try_from(n).unwrap_or(u32::MAX)) };
     let whole = bound.is_int();
@@ -359,10 +313,10 @@ fn size(
             } else if *bound == Number::from(all) {
                 into.at_most = into.at_most.min(all.saturating_sub(1));
             } else {
-                return fail(message::condition(span));
+                return fail(message::condition(into.span));
             }
         }
-        _ => return fail(message::condition(span)),
+        _ => return fail(message::condition(into.span)),
     }
     Ok(())
 }

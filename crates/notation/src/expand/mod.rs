@@ -14,8 +14,8 @@ use model::{FamilyState, LabelId, Model, ModelBuilder, Number, Sense};
 
 use crate::bind::Bound;
 use crate::diagnostic::{Diagnostic, data, size, tidy};
-use crate::evaluate::{Element, Environment, Evaluated, Evaluator, Found, Guard, Linear, Walk};
-use crate::plan::{Node, Plan, Step};
+use crate::evaluate::{Element, Environment, Evaluated, Evaluator, Found, Linear, Scale, Walk};
+use crate::plan::{Node, Step};
 use crate::syntax::Big;
 use columns::Draft;
 
@@ -250,15 +250,15 @@ impl Expansion {
             self.stage = self.rows_stage(0);
             return Ok(());
         };
-        let sign = if *minus { -Number::ONE } else { Number::ONE };
+        let sign = if *minus { Scale::minus_one() } else { Scale::one() };
         let Node::Over(Big::Sum, steps, body, _) = node else {
-            self.add_costs(node, &sign, Guard::ALWAYS, budget)?;
+            self.add_costs(node, &sign, budget)?;
             self.stage = self.objective_stage(term + 1);
             return Ok(());
         };
         while *budget > 0 {
             match self.next_tuple(steps, "objective", budget)? {
-                Found::Tuple(guard) => self.add_costs(body, &sign, guard, budget)?,
+                Found::Tuple(_) => self.add_costs(body, &sign, budget)?,
                 Found::Paused => return Ok(()),
                 Found::Done => {
                     self.start_walk();
@@ -270,15 +270,9 @@ impl Expansion {
         Ok(())
     }
 
-    fn add_costs(
-        &mut self,
-        node: &Node,
-        sign: &Number,
-        guard: Guard,
-        budget: &mut u64,
-    ) -> Evaluated<()> {
+    fn add_costs(&mut self, node: &Node, sign: &Scale, budget: &mut u64) -> Evaluated<()> {
         let mut linear = Linear::default();
-        self.evaluator.linear(node, sign, guard, &mut self.env, &mut linear)?;
+        self.evaluator.linear(node, sign, &mut self.env, &mut linear)?;
         *budget = budget.saturating_sub(linear.terms.len() as u64);
         self.offset += linear.constant;
         for (column, _, coefficient) in linear.terms {
@@ -310,13 +304,7 @@ fn single_set(values: &Option<crate::evaluate::Values>) -> Option<Vec<Element>> 
 
 /// The number of tuples of steps that have no condition, where each set is the same for every
 /// tuple; `None` where that is not so.
-fn count(
-    plan: &Plan,
-    steps: &[Step],
-    evaluator: &Evaluator,
-    env: &mut Environment,
-) -> Option<u128> {
-    let _ = plan;
+fn count(steps: &[Step], evaluator: &Evaluator, env: &mut Environment) -> Option<u128> {
     let mut product = 1_u128;
     for step in steps {
         let Step::Over { pattern, set, .. } = step else { return None };

@@ -4,7 +4,7 @@ use model::{ColumnId, FamilyState, Number, Row};
 
 use super::{Expansion, count};
 use crate::diagnostic::{rows as message, size};
-use crate::evaluate::{Evaluated, Evaluator, Found, Guard, Linear, fail};
+use crate::evaluate::{Evaluated, Evaluator, Found, Guard, Linear, Scale, fail};
 use crate::plan::{FamilyPlan, Node, RowPlan};
 use crate::syntax::Relation;
 
@@ -72,8 +72,7 @@ impl Expansion {
         if state == FamilyState::Out {
             return Ok(false);
         }
-        let tuples =
-            count(&self.evaluator.plan.clone(), &family.steps, &self.evaluator, &mut self.env);
+        let tuples = count(&family.steps, &self.evaluator, &mut self.env);
         match tuples {
             Some(tuples) if tuples > self.limits.nonzeros as u128 => {
                 fail(size::rows(&family.name, tuples, self.limits.nonzeros, family.span))
@@ -104,7 +103,7 @@ impl Expansion {
 
     fn form(&mut self, node: &Node) -> Evaluated<Linear> {
         let mut linear = Linear::default();
-        self.evaluator.linear(node, &Number::ONE, Guard::ALWAYS, &mut self.env, &mut linear)?;
+        self.evaluator.linear(node, &Scale::one(), &mut self.env, &mut linear)?;
         Ok(linear)
     }
 

@@ -8,7 +8,7 @@ use model::{ColumnId, FamilyState, LabelId, Number, Scope, SubsetFamily, SubsetT
 
 use super::Expansion;
 use crate::diagnostic::{size, subsets as message};
-use crate::evaluate::{Element, Evaluated, Evaluator, Guard, Linear, Set, fail};
+use crate::evaluate::{Element, Evaluated, Evaluator, Guard, Linear, Scale, Set, fail};
 use crate::plan::{FamilyPlan, RowPlan, SubsetPlan};
 use crate::syntax::Relation;
 
@@ -108,8 +108,8 @@ impl Expansion {
             return fail(message::ranged(family.span));
         };
         let mut form = Linear::default();
-        self.evaluator.linear(left, &Number::ONE, Guard::ALWAYS, &mut self.env, &mut form)?;
-        self.evaluator.linear(right, &-Number::ONE, Guard::ALWAYS, &mut self.env, &mut form)?;
+        self.evaluator.linear(left, &Scale::one(), &mut self.env, &mut form)?;
+        self.evaluator.linear(right, &Scale::minus_one(), &mut self.env, &mut form)?;
         let mut sums: BTreeMap<(u32, Scope), Number> = BTreeMap::new();
         for (column, guard, coefficient) in form.terms {
             for (scope, factor) in self.scopes(guard, ground) {

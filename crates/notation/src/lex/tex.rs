@@ -85,19 +85,21 @@ impl Lexer<'_> {
 
     fn with_argument(&mut self, name: &str, start: usize, after: usize) {
         let argument = self.argument(after);
-        let (inner, end) = argument.map_or(("", after), |(range, end)| (&self.text[range], end));
+        let text = self.text;
+        let (inner, end) = argument.map_or(("", after), |(range, end)| (&text[range], end));
         self.at = end;
         match name {
-            "text" | "mbox" | "textrm" | "textit" | "textup" => self.text(inner.to_owned(), start),
+            "text" | "mbox" | "textrm" | "textit" | "textup" => self.text_argument(inner, start),
             "mathrm" | "mathit" | "operatorname" | "mathsf" | "texttt" | "mathtt" => {
-                self.upright(inner.trim().to_owned(), start);
+                self.upright(inner.trim(), start);
             }
             "tag" => {
-                let text = inner.trim().trim_matches(['(', ')', '$']).to_owned();
+                let text =
+                    inner.trim_matches(|c: char| c.is_whitespace() || "()$".contains(c)).to_owned();
                 self.push_text(Kind::Tag, start, end, text);
             }
             "label" | "hspace" | "vspace" | "phantom" | "hphantom" | "vphantom" => {
-                self.gap.add(Gap::SPACE)
+                self.gap.add(Gap::SPACE);
             }
             "begin" => {
                 self.begin(inner);
@@ -114,8 +116,7 @@ impl Lexer<'_> {
             "mathbb" | "mathds" | "mathbf" | "boldsymbol" | "bm" | "mathcal" | "bar" | "hat"
             | "tilde" | "vec" | "overline" | "underline" | "dot" | "widehat" | "widetilde"
             | "mathscr" => {
-                let inner = inner.trim().to_owned();
-                self.decorated(name, &inner, start);
+                self.decorated(name, inner.trim(), start);
             }
             _ => {
                 self.at = after;
@@ -154,7 +155,7 @@ impl Lexer<'_> {
     }
 
     /// `\text{…}`: a word of the language, or text.
-    fn text(&mut self, inner: String, start: usize) {
+    fn text_argument(&mut self, inner: &str, start: usize) {
         let words: Vec<&str> = inner.split_whitespace().collect();
         let lower = words.join(" ").to_lowercase();
         let kind = match lower.trim_matches([',', ':']) {
@@ -182,10 +183,12 @@ impl Lexer<'_> {
     }
 
     /// `\mathrm{dist}` is the name `dist`; one that is no plain name counts as text.
-    fn upright(&mut self, inner: String, start: usize) {
-        let plain = !inner.is_empty() && inner.chars().all(char::is_alphanumeric);
+    fn upright(&mut self, inner: &str, start: usize) {
+        let plain =
+            inner.starts_with(char::is_alphabetic) && inner.chars().all(char::is_alphanumeric);
+        let plain = plain && table::word(inner).is_none();
         let end = self.at;
-        self.push_text(if plain { Kind::Word } else { Kind::Text }, start, end, inner);
+        self.push_text(if plain { Kind::Word } else { Kind::Text }, start, end, inner.to_owned());
     }
 
     fn begin(&mut self, name: &str) {

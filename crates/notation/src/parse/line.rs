@@ -6,6 +6,9 @@ use crate::lex::token::{Gap, Kind as T};
 use crate::place::Span;
 use crate::syntax::{Expression, Kind, Label, Line, NumberSet, Relation};
 
+/// The relations of a line, each with its right operand.
+type Links = Vec<(Relation, Expression)>;
+
 impl Parser<'_> {
     /// `c_{i,j} ≥ 0 ∀ (i,j) ∈ A`, `V`, `s, t ∈ V`.
     pub(super) fn data_line(&mut self) -> Read<Line> {
@@ -73,7 +76,7 @@ impl Parser<'_> {
     }
 
     /// Operands and relations up to the quantifier.
-    fn operands(&mut self) -> Read<(Vec<Expression>, Vec<(Relation, Expression)>)> {
+    fn operands(&mut self) -> Read<(Vec<Expression>, Links)> {
         let mut left = vec![self.range()?];
         while self.peek() == T::Comma && !self.ahead(1).continues() && self.ahead(1) != T::End {
             self.bump();

@@ -33,7 +33,8 @@ impl Status {
     }
 }
 
-/// A basis: for each column and each row whether it is basic, at its lower or upper bound, or free at zero.
+/// A basis: for each column and each row whether it is basic, at its lower or upper bound, or free
+/// at zero.
 ///
 /// Two bits a variable. It can be loaded into a problem with other bounds or further rows.
 #[derive(Clone, Debug, PartialEq, Eq, PartialOrd, Ord, Hash, Default)]

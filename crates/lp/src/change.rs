@@ -55,7 +55,8 @@ impl Core {
         self.sort_head();
     }
 
-    /// Makes a basis current: unknown rows basic, as many basic variables as rows, dependent ones replaced.
+    /// Makes a basis current: unknown rows basic, as many basic variables as rows, dependent ones
+    /// replaced.
     pub(crate) fn load(&mut self, basis: &Basis) -> Repair {
         let (n, m) = (self.columns(), self.rows());
         let (known_columns, known_rows) =
@@ -84,7 +85,8 @@ impl Core {
         repair
     }
 
-    /// Makes as many variables basic as there are rows: too many leave from the last column, missing ones are logicals.
+    /// Makes as many variables basic as there are rows: too many leave from the last column,
+    /// missing ones are logicals.
     fn balance(&mut self, repair: &mut Repair) {
         let (n, m) = (self.columns(), self.rows());
         let mut count = self.status.iter().filter(|status| **status == Status::Basic).count();

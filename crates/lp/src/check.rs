@@ -4,8 +4,8 @@ use crate::basis::Status;
 use crate::state::{Core, settled};
 
 impl Core {
-    /// Says which invariant is broken, if any: lengths, head against statuses, statuses against bounds, the two copies
-    /// of the matrix against each other. Work: the nonzeros.
+    /// Says which invariant is broken, if any: lengths, head against statuses, statuses against
+    /// bounds, the two copies of the matrix against each other. Work: the nonzeros.
     pub(crate) fn check(&self) -> Result<(), String> {
         let (variables, rows) = (self.variables(), self.rows());
         let by_variable = [

@@ -4,14 +4,15 @@
 //! min  cᵀx     L ≤ Ax ≤ U,   l ≤ x ≤ u      (any side infinite)
 //! ```
 //!
-//! [`Simplex`] holds a [`Problem`] and a basis. The bounded dual simplex method with steepest edge is the main
-//! method; the primal one cleans up, follows changed costs and finds unbounded rays. Bounds, costs and rows may change between
-//! solves, and the basis is kept. A solve goes on in slices ([`Simplex::advance`]) and ends with an [`Outcome`]: optimal,
-//! infeasible or unbounded, each with its certificate, checked against the rows as given before it is released.
+//! [`Simplex`] holds a [`Problem`] and a basis. The bounded dual simplex method with steepest edge
+//! is the main method; the primal one cleans up, follows changed costs and finds unbounded rays.
+//! Bounds, costs and rows may change between solves, and the basis is kept. A solve goes on in
+//! slices ([`Simplex::advance`]) and ends with an [`Outcome`]: optimal, infeasible or unbounded,
+//! each with its certificate, checked against the rows as given before it is released.
 //!
-//! Everything is deterministic: no clock, no randomness, ties by index, the same bits for every slicing. The values of
-//! an optimum are computed from fresh factors of its basis in canonical order, so they depend on rows, bounds and
-//! basis alone.
+//! Everything is deterministic: no clock, no randomness, ties by index, the same bits for every
+//! slicing. The values of an optimum are computed from fresh factors of its basis in canonical
+//! order, so they depend on rows, bounds and basis alone.
 //!
 //! ```
 //! use hullward_lp::{Limits, Outcome, Problem, Simplex};

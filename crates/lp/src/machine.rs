@@ -1,10 +1,11 @@
 //! The machine behind a solve, one step at a time.
 //!
-//! *Evaluate* makes fresh factors of the basis in canonical order, with the given costs and bounds, and decides:
-//! optimal, primal feasible only (primal method) or not feasible (dual method, wrong-signed reduced costs shifted
-//! away first). Each method ends in another evaluation, so every outcome comes from the same place and its values
-//! depend on rows, bounds and basis alone. When numbers cannot be trusted: fresh factors, then the row or column is
-//! set aside, then the solve begins again with more care, at last it stops and says why.
+//! *Evaluate* makes fresh factors of the basis in canonical order, with the given costs and bounds,
+//! and decides: optimal, primal feasible only (primal method) or not feasible (dual method,
+//! wrong-signed reduced costs shifted away first). Each method ends in another evaluation, so every
+//! outcome comes from the same place and its values depend on rows, bounds and basis alone. When
+//! numbers cannot be trusted: fresh factors, then the row or column is set aside, then the solve
+//! begins again with more care, at last it stops and says why.
 
 use crate::dual::{self, DualState, DualStep};
 use crate::outcome::{Outcome, Ray, StopReason};
@@ -114,7 +115,8 @@ impl Machine {
         self.phase = Phase::Evaluate;
     }
 
-    /// Begins again with more care: from the current basis, from the slack basis, with looser tolerances; then gives up.
+    /// Begins again with more care: from the current basis, from the slack basis, with looser
+    /// tolerances; then gives up.
     fn fall_back(&mut self, core: &mut Core, reason: String) {
         self.attempt += 1;
         if self.attempt > LAST {
@@ -303,7 +305,8 @@ impl Machine {
         }
     }
 
-    /// Fresh factors and values in the middle of the primal method; back to the evaluation when feasibility was lost.
+    /// Fresh factors and values in the middle of the primal method; back to the evaluation when
+    /// feasibility was lost.
     fn refresh_primal(&mut self, core: &mut Core) {
         core.refactor();
         core.compute_basic();

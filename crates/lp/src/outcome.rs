@@ -1,4 +1,5 @@
-//! What a solve ends with: values, never errors; each is checked against the caller's rows before it is released.
+//! What a solve ends with: values, never errors; each is checked against the caller's rows before
+//! it is released.
 
 /// How a solve ended.
 #[derive(Clone, Debug, PartialEq)]
@@ -18,7 +19,8 @@ pub enum Outcome {
     Stopped {
         /// Why.
         reason: StopReason,
-        /// The bound the duals give on the optimal value, where there is one (floating point, not proved).
+        /// The bound the duals give on the optimal value, where there is one (floating point, not
+        /// proved).
         bound: Option<f64>,
         /// One a row, from the costs as given (not from perturbed ones).
         duals: Vec<f64>,
@@ -42,12 +44,13 @@ pub struct Solution {
 
 /// A proof (Farkas) that no point satisfies rows and bounds.
 ///
-/// With g = −Aᵀy for the multipliers y: Σ_i min(y_i L_i, y_i U_i) + Σ_j min(g_j l_j, g_j u_j) > 0, while every
-/// feasible point would make the left side at most zero. All zero when some column or row has crossed bounds,
-/// which is proof enough.
+/// With g = −Aᵀy for the multipliers y: Σ_i min(y_i L_i, y_i U_i) + Σ_j min(g_j l_j, g_j u_j) > 0,
+/// while every feasible point would make the left side at most zero. All zero when some column or
+/// row has crossed bounds, which is proof enough.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Ray {
-    /// y, one a row: small whole numbers where a factor up to 64 makes them so, else at most 1 in size.
+    /// y, one a row: small whole numbers where a factor up to 64 makes them so, else at most 1 in
+    /// size.
     pub multipliers: Vec<f64>,
 }
 

@@ -96,7 +96,8 @@ impl Problem {
     /// Adds a column.
     ///
     /// # Errors
-    /// When the cost is not finite, a bound is NaN or infinite on the wrong side, or the problem grows too large.
+    /// When the cost is not finite, a bound is NaN or infinite on the wrong side, or the problem
+    /// grows too large.
     pub fn add_column(&mut self, cost: f64, lower: f64, upper: f64) -> Result<Col, ProblemError> {
         if !cost.is_finite() {
             return Err(ProblemError::Cost);
@@ -112,7 +113,8 @@ impl Problem {
     /// Adds a row; repeated columns are summed.
     ///
     /// # Errors
-    /// When a column is unknown, a coefficient is not finite, a side is NaN or infinite on the wrong side, or the problem grows too large.
+    /// When a column is unknown, a coefficient is not finite, a side is NaN or infinite on the
+    /// wrong side, or the problem grows too large.
     pub fn add_row(
         &mut self,
         entries: &[(Col, f64)],

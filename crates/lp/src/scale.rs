@@ -1,10 +1,11 @@
 //! Scaling by powers of two, for matrices whose coefficients differ much in size.
 //!
-//! Every variable j has a unit u_j: value = u_j · scaled value, where a logical's value is its row's activity. So
-//! a_ij becomes a_ij u_j / u_{n+i}, bounds are divided by u_j, costs multiplied, reduced costs (a row's dual is its
-//! logical's) divided. Powers of two change no digit. The units are geometric means, found on binary exponents
-//! alone: in turn each row and each column is centred about exponent 0. They depend on the rows alone, not
-//! on how these came. A matrix with little spread is left as it is.
+//! Every variable j has a unit u_j: value = u_j · scaled value, where a logical's value is its
+//! row's activity. So a_ij becomes a_ij u_j / u_{n+i}, bounds are divided by u_j, costs multiplied,
+//! reduced costs (a row's dual is its logical's) divided. Powers of two change no digit. The units
+//! are geometric means, found on binary exponents alone: in turn each row and each column is
+//! centred about exponent 0. They depend on the rows alone, not on how these came. A matrix with
+//! little spread is left as it is.
 //!
 //! Source: Tomlin 1975; Fourer 1982 (geometric scaling).
 
@@ -20,7 +21,8 @@ const ROUNDS: u32 = 4;
 /// Largest binary exponent of a unit.
 const LIMIT: i32 = 60;
 
-/// floor(log2 |value|) of a normal number; far below every normal one for zero and subnormal numbers.
+/// floor(log2 |value|) of a normal number; far below every normal one for zero and subnormal
+/// numbers.
 fn exponent(value: f64) -> i32 {
     ((value.to_bits() >> 52) & 0x7ff) as i32 - 1023
 }

@@ -114,7 +114,8 @@ impl Simplex {
         }
     }
 
-    /// Sets a column's cost. An infinite cost, one that is not a number or an unknown column changes nothing.
+    /// Sets a column's cost. An infinite cost, one that is not a number or an unknown column
+    /// changes nothing.
     pub fn set_cost(&mut self, column: Col, cost: f64) {
         let at = column.0 as usize;
         if at < self.core.columns() && cost.is_finite() {
@@ -141,7 +142,8 @@ impl Simplex {
         Basis::pack(&self.core.status, self.core.columns())
     }
 
-    /// Makes a basis current, mended where it does not fit. What follows depends on it alone, not on earlier solves.
+    /// Makes a basis current, mended where it does not fit. What follows depends on it alone, not
+    /// on earlier solves.
     pub fn load_basis(&mut self, basis: &Basis) -> Repair {
         self.forget();
         self.core.load(basis)

@@ -1,8 +1,9 @@
 //! The state both simplex methods work on.
 //!
-//! min cᵀx, Ax − s = 0, bounds on x and s: row i has a logical s_i (variable n + i, column −e_i) whose bounds
-//! are the row's range. With y = B⁻ᵀc_B the reduced costs are d_j = c_j − a_jᵀy, and d of a logical is y_i.
-//! Everything is in scaled units (see `scale`). The methods may alter *working* costs and bounds (perturbation, shifts); the given ones stay.
+//! min cᵀx, Ax − s = 0, bounds on x and s: row i has a logical s_i (variable n + i, column −e_i)
+//! whose bounds are the row's range. With y = B⁻ᵀc_B the reduced costs are d_j = c_j − a_jᵀy, and d
+//! of a logical is y_i. Everything is in scaled units (see `scale`). The methods may alter
+//! *working* costs and bounds (perturbation, shifts); the given ones stay.
 
 use crate::basis::Status;
 use crate::lu::{BasisColumns, Factor};
@@ -154,7 +155,8 @@ impl Core {
         self.work_upper.clone_from(&self.upper);
     }
 
-    /// Moves every nonbasic status to a bound that exists (working bounds); fixed variables count as at the lower one.
+    /// Moves every nonbasic status to a bound that exists (working bounds); fixed variables count
+    /// as at the lower one.
     pub(crate) fn settle_statuses(&mut self) {
         for j in 0..self.status.len() {
             if self.status[j] != Status::Basic {
@@ -188,8 +190,8 @@ impl Core {
         self.canonical = false;
     }
 
-    /// Factorises the basis in the order of the head, with the threshold of the attempt. Dependent columns are
-    /// replaced by logicals; returns how many.
+    /// Factorises the basis in the order of the head, with the threshold of the attempt. Dependent
+    /// columns are replaced by logicals; returns how many.
     pub(crate) fn refactor(&mut self) -> u32 {
         self.refactor_with(self.threshold)
     }
@@ -218,7 +220,8 @@ impl Core {
         replaced.len() as u32
     }
 
-    /// Factors of the sorted head without updates, the same ones in every attempt; returns how many columns were replaced.
+    /// Factors of the sorted head without updates, the same ones in every attempt; returns how many
+    /// columns were replaced.
     pub(crate) fn refactor_canonical(&mut self) -> u32 {
         if self.canonical && self.factor.updates() == 0 {
             return 0;
@@ -307,7 +310,8 @@ impl Core {
         self.ticks += self.matrix.nonzeros() as u64;
     }
 
-    /// How far a nonbasic variable's reduced cost has the wrong sign; zero when it has not or the variable is fixed.
+    /// How far a nonbasic variable's reduced cost has the wrong sign; zero when it has not or the
+    /// variable is fixed.
     pub(crate) fn wrong_sign(&self, j: usize) -> f64 {
         let d = self.reduced[j];
         let wrong = match self.status[j] {
@@ -367,7 +371,8 @@ impl Core {
         self.scratch.column = column;
     }
 
-    /// True when the pivot of `scratch.column` is large enough beside the column and agrees with the one of `scratch.row`.
+    /// True when the pivot of `scratch.column` is large enough beside the column and agrees with
+    /// the one of `scratch.row`.
     pub(crate) fn pivot_is_sound(&self, position: u32, entering: u32) -> bool {
         let by_column = self.scratch.column.get(position);
         let by_row = self.scratch.row.get(entering);
@@ -381,7 +386,8 @@ impl Core {
         by_column.abs() >= least && (by_column - by_row).abs() <= agreement * by_column.abs()
     }
 
-    /// Puts `entering` at a position with a value; the variable that leaves goes to `leaving_status`.
+    /// Puts `entering` at a position with a value; the variable that leaves goes to
+    /// `leaving_status`.
     pub(crate) fn exchange(
         &mut self,
         position: u32,

@@ -3,20 +3,23 @@
 /// Violation of a bound or a row range that counts as none; absolute, in the units of the row.
 pub(crate) const PRIMAL: f64 = 1e-9;
 
-/// What is added to [`PRIMAL`] per unit of the bound's own size: rounding of large values; relative.
+/// What is added to [`PRIMAL`] per unit of the bound's own size: rounding of large values;
+/// relative.
 pub(crate) const PRIMAL_RELATIVE: f64 = 1e-14;
 
-/// Wrong-signed reduced cost that counts as none; absolute, in units of the objective per unit of the column.
+/// Wrong-signed reduced cost that counts as none; absolute, in units of the objective per unit of
+/// the column.
 pub(crate) const DUAL: f64 = 1e-9;
 
-/// How far reduced costs may overstep zero in the first pass of the dual ratio test (Harris 1973); absolute.
+/// How far reduced costs may overstep zero in the first pass of the dual ratio test (Harris 1973);
+/// absolute.
 pub(crate) const HARRIS_DUAL: f64 = 1e-9;
 
 /// How far basic values may overstep a bound in the first pass of the primal ratio test; absolute.
 pub(crate) const HARRIS_PRIMAL: f64 = 1e-9;
 
-/// Entries of a tableau row or column below this take no part in a ratio test; relative to the largest of them,
-/// and to 1 where that is larger.
+/// Entries of a tableau row or column below this take no part in a ratio test; relative to the
+/// largest of them, and to 1 where that is larger.
 const RATIO_ENTRY: f64 = 1e-9;
 
 /// The smallest entry of a ratio test when this is the largest.
@@ -24,21 +27,22 @@ pub(crate) fn ratio_entry(largest: f64) -> f64 {
     if largest < 1.0 { RATIO_ENTRY * largest } else { RATIO_ENTRY }
 }
 
-/// Smallest pivot taken while the factors carry updates, below it they are made afresh first; relative to the
-/// largest entry of its column, and to 1 where that is larger.
+/// Smallest pivot taken while the factors carry updates, below it they are made afresh first;
+/// relative to the largest entry of its column, and to 1 where that is larger.
 pub(crate) const PIVOT_AFTER_UPDATES: f64 = 1e-5;
 
 /// Smallest pivot taken with fresh factors; relative as above.
 pub(crate) const PIVOT_FRESH: f64 = 1e-11;
 
-/// Difference allowed between a pivot computed by row and by column while the factors carry updates; relative.
+/// Difference allowed between a pivot computed by row and by column while the factors carry
+/// updates; relative.
 pub(crate) const AGREEMENT_AFTER_UPDATES: f64 = 1e-6;
 
 /// The same with fresh factors; relative.
 pub(crate) const AGREEMENT_FRESH: f64 = 1e-5;
 
-/// Values produced by a solve below this are taken for cancelled; relative to the largest of them, and to 1 where that
-/// is larger.
+/// Values produced by a solve below this are taken for cancelled; relative to the largest of them,
+/// and to 1 where that is larger.
 const SOLVE_DROP: f64 = 1e-14;
 
 /// The value below which the results of a solve are dropped when this is the largest.
@@ -61,7 +65,8 @@ pub(crate) const MARKOWITZ_CAREFUL: f64 = 0.5;
 /// Columns and rows examined in one Markowitz search (Suhl, Suhl 1990).
 pub(crate) const MARKOWITZ_CANDIDATES: usize = 4;
 
-/// A stored steepest-edge weight this many times off the computed one is mended before the row is used.
+/// A stored steepest-edge weight this many times off the computed one is mended before the row is
+/// used.
 pub(crate) const WEIGHT_RATIO: f64 = 4.0;
 
 /// Smallest steepest-edge weight.
@@ -79,7 +84,8 @@ pub(crate) const PERTURB_BOUND: f64 = 1e-7;
 /// Updates before the factors are made afresh.
 pub(crate) const UPDATES: usize = 64;
 
-/// Share of nonzeros up to which a triangular solve looks for its reach first (Gilbert, Peierls 1988).
+/// Share of nonzeros up to which a triangular solve looks for its reach first (Gilbert, Peierls
+/// 1988).
 pub(crate) const HYPERSPARSE: f64 = 0.05;
 
 /// Row violation of a released point; relative to 1 + the largest |a x| of the row.
@@ -88,7 +94,8 @@ pub(crate) const VERIFY_ROW: f64 = 2e-9;
 /// Wrong-signed reduced cost of released duals; relative to 1 + the largest |y a| of the column.
 pub(crate) const VERIFY_DUAL: f64 = 2e-9;
 
-/// Difference of primal and dual objective of a released optimum; relative to 1 + the sum of the terms' sizes.
+/// Difference of primal and dual objective of a released optimum; relative to 1 + the sum of the
+/// terms' sizes.
 pub(crate) const VERIFY_GAP: f64 = 1e-8;
 
 /// Noise in a column of a released ray, taken for zero; relative to the sum of the terms' sizes.
@@ -97,5 +104,6 @@ pub(crate) const VERIFY_RAY: f64 = 1e-9;
 /// A Farkas proof must exceed zero by this; relative to the sum of the terms' sizes.
 pub(crate) const VERIFY_FARKAS: f64 = 1e-9;
 
-/// Factor on [`PRIMAL`] and [`DUAL`] in the last attempt on a problem whose values are too large for them.
+/// Factor on [`PRIMAL`] and [`DUAL`] in the last attempt on a problem whose values are too large
+/// for them.
 pub(crate) const LAST_ATTEMPT: f64 = 100.0;

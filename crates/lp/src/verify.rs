@@ -1,7 +1,9 @@
-//! What is released is checked against the caller's rows, bounds and costs, not against the kernel's own books.
+//! What is released is checked against the caller's rows, bounds and costs, not against the
+//! kernel's own books.
 //!
-//! For multipliers y and g = c − Aᵀy the dual bound is b(y) = Σ_i min(y_i L_i, y_i U_i) + Σ_j min(g_j l_j, g_j u_j).
-//! It bounds cᵀx from below; with c = 0, b(y) > 0 proves that there is no feasible point.
+//! For multipliers y and g = c − Aᵀy the dual bound is b(y) = Σ_i min(y_i L_i, y_i U_i) + Σ_j
+//! min(g_j l_j, g_j u_j). It bounds cᵀx from below; with c = 0, b(y) > 0 proves that there is no
+//! feasible point.
 
 use crate::basis::Status;
 use crate::outcome::{Ray, Solution};
@@ -82,7 +84,8 @@ impl Core {
         self.dual_value(y, true, VERIFY_DUAL).map(|bound| bound.value)
     }
 
-    /// The multipliers `sign` · `scratch.rho` as a ray in the caller's units, if they prove infeasibility.
+    /// The multipliers `sign` · `scratch.rho` as a ray in the caller's units, if they prove
+    /// infeasibility.
     pub(crate) fn farkas_ray(&self, sign: f64) -> Option<Ray> {
         let n = self.columns();
         let rho = &self.scratch.rho;
@@ -108,7 +111,8 @@ impl Core {
             .is_some_and(|bound| bound.value > VERIFY_FARKAS * bound.size)
     }
 
-    /// The values of the columns, basic ones clipped to their bounds (by no more than the tolerance, when feasible).
+    /// The values of the columns, basic ones clipped to their bounds (by no more than the
+    /// tolerance, when feasible).
     fn point(&self) -> Vec<f64> {
         let n = self.columns();
         let mut x: Vec<f64> = (0..n)

@@ -1,9 +1,9 @@
 //! The dual simplex method for bounded variables.
 //!
-//! It holds reduced costs of the right sign and removes violations of basic variables one at a time:
-//! leaving row by steepest edge, entering column by the bound-flipping ratio test. Wrong-signed
-//! reduced costs are never kept: the working cost is shifted instead, and the shifts are
-//! undone by the primal method afterwards.
+//! It holds reduced costs of the right sign and removes violations of basic variables one at a
+//! time: leaving row by steepest edge, entering column by the bound-flipping ratio test.
+//! Wrong-signed reduced costs are never kept: the working cost is shifted instead, and the shifts
+//! are undone by the primal method afterwards.
 //!
 //! Source: Koberstein 2005; Forrest, Goldfarb 1992; Maros 2003.
 
@@ -23,7 +23,8 @@ pub(crate) enum DualStep {
     Moved,
     /// No basic variable violates its bounds.
     Feasible,
-    /// The row in `scratch.rho` proves that there is no feasible point; the sign is that of the proof.
+    /// The row in `scratch.rho` proves that there is no feasible point; the sign is that of the
+    /// proof.
     Ray { position: u32, sign: f64 },
     /// The pivot at this position cannot be trusted.
     Unsound { position: u32 },

@@ -1,5 +1,5 @@
-//! Perturbation of costs against stalling: each nonbasic reduced cost moves a little way into its feasible side, by an
-//! amount that is fixed by the variable's index.
+//! Perturbation of costs against stalling: each nonbasic reduced cost moves a little way into its
+//! feasible side, by an amount that is fixed by the variable's index.
 //!
 //! Source: Koberstein 2005, section 6.3.
 

@@ -1,10 +1,11 @@
 //! The bound-flipping ratio test.
 //!
-//! The leaving variable violates a bound by δ; along the dual step t every reduced cost falls as d_j − t α_j, and
-//! the dual objective rises with slope δ. Passing the breakpoint d_j / α_j of a boxed variable costs |α_j|(u_j − l_j)
-//! of slope; breakpoints are passed while the slope stays positive, and the variables passed flip to their
-//! other bound. Breakpoints are taken in groups that Harris's tolerance makes equal; in the last
-//! profitable group with a good pivot, the largest |α_j| enters.
+//! The leaving variable violates a bound by δ; along the dual step t every reduced cost falls as
+//! d_j − t α_j, and the dual objective rises with slope δ. Passing the breakpoint d_j / α_j of a
+//! boxed variable costs |α_j|(u_j − l_j) of slope; breakpoints are passed while the slope stays
+//! positive, and the variables passed flip to their other bound. Breakpoints are taken in groups
+//! that Harris's tolerance makes equal; in the last profitable group with a good pivot, the largest
+//! |α_j| enters.
 //!
 //! Source: Fourer 1994; Maros 2003; Harris 1973.
 
@@ -62,7 +63,8 @@ pub(crate) fn choose(core: &mut Core, position: u32, sign: f64) -> Choice {
     Choice::Enter { entering: entering.variable, flips }
 }
 
-/// The largest pivot of the first group, when the slope ends there: the common case, without sorting.
+/// The largest pivot of the first group, when the slope ends there: the common case, without
+/// sorting.
 fn first_group(points: &[Breakpoint], slope: f64) -> Option<u32> {
     let bound = points.iter().map(Breakpoint::relaxed).reduce(|a, b| if b < a { b } else { a })?;
     let group = || points.iter().filter(|point| point.ratio() <= bound);

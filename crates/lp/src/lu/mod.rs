@@ -22,7 +22,8 @@ use eta::EtaFile;
 use pivots::Pivots;
 use triangle::{Direction, Reach, Triangle};
 
-/// A position of the basis whose column depends on the others, and the row whose logical takes its place.
+/// A position of the basis whose column depends on the others, and the row whose logical takes its
+/// place.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(crate) struct Replaced {
     pub(crate) position: u32,

@@ -1,9 +1,9 @@
 //! What the singletons leave: Markowitz pivoting with a threshold.
 //!
 //! Among entries of at least `threshold` times the largest of their row, one with a small product
-//! (row count − 1)(column count − 1) is taken, found by looking through a few of the shortest columns
-//! and rows. The bound on a_rj / a_rp keeps the growth of the active entries
-//! a_ij − a_ip (a_rj / a_rp) in check.
+//! (row count − 1)(column count − 1) is taken, found by looking through a few of the shortest
+//! columns and rows. The bound on a_rj / a_rp keeps the growth of the active entries a_ij − a_ip
+//! (a_rj / a_rp) in check.
 //!
 //! Source: Markowitz 1957; Suhl, Suhl 1990.
 
@@ -171,7 +171,8 @@ impl Active {
         pivots.close(pivot.row, pivot.position, pivot.value);
     }
 
-    /// Subtracts the pivot row from a row so that the pivot position vanishes; returns the multiplier.
+    /// Subtracts the pivot row from a row so that the pivot position vanishes; returns the
+    /// multiplier.
     fn subtract(&mut self, row: u32, pivot: Candidate, pivot_entries: &[(u32, f64)]) -> f64 {
         let mut entries = std::mem::take(&mut self.rows[row as usize]);
         let at = entries.iter().position(|entry| entry.0 == pivot.position);

@@ -137,7 +137,8 @@ impl Pivots {
         self.upper_end.push(self.upper.len());
     }
 
-    /// Pairs what is left of rows and positions in ascending order, logicals for the dependent columns.
+    /// Pairs what is left of rows and positions in ascending order, logicals for the dependent
+    /// columns.
     pub(crate) fn complete(&mut self) -> Vec<Replaced> {
         let size = self.step_of_row.len() as u32;
         let rows: Vec<u32> = (0..size).filter(|&row| self.row_is_open(row)).collect();

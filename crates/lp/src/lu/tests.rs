@@ -151,7 +151,8 @@ fn dependent_columns_are_replaced_by_logicals() {
     assert!(residual(&mut factor, &mended, &mut Random(5)) < 1e-12);
 }
 
-/// Every place listed: the solve takes all steps. Few listed: it searches first. Both give the same bits.
+/// Every place listed: the solve takes all steps. Few listed: it searches first. Both give the same
+/// bits.
 #[test]
 fn sparse_and_full_solves_give_the_same_bits() {
     let mut random = Random(77);

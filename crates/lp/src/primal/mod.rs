@@ -1,9 +1,9 @@
 //! The primal simplex method for bounded variables, from a feasible basis.
 //!
-//! It cleans up after the dual method's shifts and perturbations, solves again after costs changed, and
-//! finds the rays of unbounded problems. Pricing by Devex reference weights; Harris ratio test; when it stalls,
-//! working bounds of basic variables are relaxed a little (the dual method mends that afterwards); as a last
-//! resort the smallest index enters (Bland 1977).
+//! It cleans up after the dual method's shifts and perturbations, solves again after costs changed,
+//! and finds the rays of unbounded problems. Pricing by Devex reference weights; Harris ratio test;
+//! when it stalls, working bounds of basic variables are relaxed a little (the dual method mends
+//! that afterwards); as a last resort the smallest index enters (Bland 1977).
 //!
 //! Source: Harris 1973; Forrest, Goldfarb 1992; Maros 2003.
 
@@ -23,7 +23,8 @@ pub(crate) enum PrimalStep {
     Moved,
     /// No reduced cost has the wrong sign.
     Optimal,
-    /// Nothing stops `entering` from moving in `direction` (1 up, −1 down); its column is in `scratch.column`.
+    /// Nothing stops `entering` from moving in `direction` (1 up, −1 down); its column is in
+    /// `scratch.column`.
     Ray { entering: u32, direction: f64 },
     /// The pivot on this entering variable cannot be trusted.
     Unsound { entering: u32 },

@@ -1,8 +1,9 @@
 //! The primal ratio test in two passes.
 //!
-//! The entering variable moves by t; basic values change by −t α (times the direction). The first pass finds how far
-//! it can go when every bound may be overstepped by a tolerance; the second takes the largest |α_i| among
-//! those that block within that distance. A boxed entering variable may reach its own other bound first.
+//! The entering variable moves by t; basic values change by −t α (times the direction). The first
+//! pass finds how far it can go when every bound may be overstepped by a tolerance; the second
+//! takes the largest |α_i| among those that block within that distance. A boxed entering variable
+//! may reach its own other bound first.
 //!
 //! Source: Harris 1973.
 
@@ -51,8 +52,8 @@ pub(crate) fn block(core: &Core, entering: u32, direction: f64) -> Block {
     }
 }
 
-/// How far the entering variable can go before the basic variable at a position oversteps a bound by `slack`;
-/// the basic variable falls at `rate`.
+/// How far the entering variable can go before the basic variable at a position oversteps a bound
+/// by `slack`; the basic variable falls at `rate`.
 fn room(core: &Core, position: u32, rate: f64, slack: f64) -> f64 {
     let value = core.basic[position as usize];
     let j = core.head[position as usize] as usize;

@@ -85,7 +85,8 @@ impl SparseVector {
         }
     }
 
-    /// Moves the values through a map of places into `target`, leaving this vector empty; tiny values are dropped.
+    /// Moves the values through a map of places into `target`, leaving this vector empty; tiny
+    /// values are dropped.
     pub(crate) fn drain_into(&mut self, map: &[u32], drop: f64, target: &mut Self) {
         for &i in &self.index {
             let value = self.value[i as usize];

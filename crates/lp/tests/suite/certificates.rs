@@ -5,7 +5,8 @@ use crate::random::Random;
 use crate::shadow::{Shadow, Verdict};
 use hullward_lp::{Limits, Outcome};
 
-/// A problem with x* and y* chosen first; bounds, sides and costs follow so that both are optimal. Returns cᵀx*.
+/// A problem with x* and y* chosen first; bounds, sides and costs follow so that both are optimal.
+/// Returns cᵀx*.
 fn with_known_optimum(random: &mut Random) -> (Shadow, f64) {
     let (columns, rows) = (random.integer(3, 40) as usize, random.integer(2, 30) as usize);
     let x: Vec<f64> = (0..columns).map(|_| random.whole(-4, 6)).collect();

@@ -1,4 +1,5 @@
-//! Relaxations of known formulations on seeded instances: round trips, location, packing, lot sizing, one machine.
+//! Relaxations of known formulations on seeded instances: round trips, location, packing, lot
+//! sizing, one machine.
 
 use crate::families::INFINITY;
 use crate::random::Random;
@@ -157,7 +158,8 @@ pub(crate) fn packing(items: usize, bins: usize, seed: u64) -> Shadow {
     shadow
 }
 
-/// Lot sizing with stocks and a big-M a period: demand, set-up, production and holding costs drawn in this order.
+/// Lot sizing with stocks and a big-M a period: demand, set-up, production and holding costs drawn
+/// in this order.
 pub(crate) fn lot_sizing(periods: usize, seed: u64) -> Shadow {
     let mut random = Random::new(seed);
     let mut shadow = Shadow::default();
@@ -183,7 +185,8 @@ pub(crate) fn lot_sizing(periods: usize, seed: u64) -> Shadow {
     shadow
 }
 
-/// Weighted completion times on one machine with release dates, time-indexed. Source: Sousa, Wolsey 1992.
+/// Weighted completion times on one machine with release dates, time-indexed. Source: Sousa, Wolsey
+/// 1992.
 pub(crate) fn one_machine(jobs: usize, seed: u64) -> Shadow {
     let mut random = Random::new(seed);
     let mut shadow = Shadow::default();

@@ -1,6 +1,7 @@
 //! Values of relaxations on instances drawn with seed 1.
 //!
-//! Source of the values: HiGHS 1.16 and microlp 0.7 on the same instances, which agree on every one.
+//! Source of the values: HiGHS 1.16 and microlp 0.7 on the same instances, which agree on every
+//! one.
 
 use crate::instances::{
     facilities, lot_sizing, multi_commodity, one_machine, packing, position_labels,

@@ -114,7 +114,8 @@ impl Shadow {
         }
     }
 
-    /// Σ min(y L, y U) + Σ min(g l, g u), g = c − Aᵀy, with g and missing sides up to `noise` forgiven.
+    /// Σ min(y L, y U) + Σ min(g l, g u), g = c − Aᵀy, with g and missing sides up to `noise`
+    /// forgiven.
     pub(crate) fn dual_bound(&self, y: &[f64], with_costs: bool, noise: f64) -> f64 {
         let term = |d: f64, lower: f64, upper: f64, size: f64| {
             let side = if d > 0.0 { lower } else { upper };

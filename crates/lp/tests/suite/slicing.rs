@@ -2,8 +2,8 @@
 
 use crate::families::{KINDS, generate};
 use crate::instances::{multi_commodity, single_commodity};
-use crate::shadow::Shadow;
-use hullward_lp::{Limits, Progress};
+use crate::shadow::{Shadow, new_row};
+use hullward_lp::{Col, Limits, Progress};
 
 fn check(shadow: &Shadow, limits: Limits, slices: &[u64], name: &str) {
     let mut whole = shadow.simplex();
@@ -43,4 +43,47 @@ fn larger_problems_in_some() {
     check(&multi_commodity(7, 5), Limits::default(), &slices, "multi commodity");
     let limits = Limits { iterations: Some(60), cutoff: Some(800.0) };
     check(&multi_commodity(7, 5), limits, &slices, "multi commodity with limits");
+}
+
+/// A solve left in the middle, then a change: the next solve is right all the same.
+#[test]
+fn an_abandoned_solve_leaves_no_trace() {
+    for kind in KINDS {
+        for seed in 0..30 {
+            let mut shadow = generate(kind, 3000 + seed);
+            let name = format!("{kind} {seed}");
+            let mut simplex = shadow.simplex();
+            simplex.start(Limits::default());
+            for _ in 0..3 + seed % 7 {
+                simplex.advance(1);
+            }
+            if seed % 2 == 0 {
+                (shadow.lower[0], shadow.upper[0]) = (1.0, 2.0);
+                simplex.set_bounds(Col(0), 1.0, 2.0);
+            } else {
+                shadow.row(vec![(0, 1.0), (1, 2.0), (3, -1.0)], -3.0, 4.0);
+                simplex.add_rows(&[new_row(&shadow.rows[shadow.rows.len() - 1])]).unwrap();
+            }
+            assert!(simplex.outcome().is_none(), "{name}");
+            assert_eq!(simplex.advance(1), Progress::Finished, "{name}");
+            let found = shadow.verdict(simplex.solve(Limits::default()), &name);
+            let cold = shadow.verdict(shadow.simplex().solve(Limits::default()), &name);
+            assert!(found.agrees(cold, 1e-8), "{name}: {found:?}, cold {cold:?}");
+        }
+    }
+}
+
+/// A copy made in the middle of a solve goes on as the original does.
+#[test]
+fn a_copy_goes_on_alike() {
+    let shadow = single_commodity(9, 8);
+    let mut original = shadow.simplex();
+    original.start(Limits::default());
+    original.advance(5_000);
+    let mut copy = original.clone();
+    while original.advance(100) == Progress::Working {}
+    while copy.advance(7_777) == Progress::Working {}
+    assert!(original.outcome().is_some());
+    assert_eq!(original.outcome(), copy.outcome());
+    assert_eq!(original.stats(), copy.stats());
 }

@@ -55,18 +55,19 @@ impl Compiled {
         let scale = Number::from(common_denominator(family) * UBig::from(2u8));
         let sign = if family.relation == Relation::AtLeast { -1 } else { 1 };
         let factor = &scale * Number::from(sign);
-        let value = |number: &Number| nearest_f64(&(number * &factor));
+        let mut scaled = Scaled { factor, last: (Number::ZERO, 0.0) };
         let terms = family.terms.iter().enumerate().filter_map(|(place, term)| {
             let kind = resolved(term.scope, &places)?;
-            let (column, coefficient) = (term.column.index(), value(&term.coefficient));
+            let (column, coefficient) = (term.column.index(), scaled.value(&term.coefficient));
             Some(Term { place, column, coefficient, kind })
         });
+        let terms = terms.collect();
         let mut compiled = Self {
             size: family.ground.len(),
             scale: nearest_f64(&scale),
-            constant: value(&family.constant),
-            weights: family.weights.iter().map(value).collect(),
-            terms: terms.collect(),
+            constant: scaled.value(&family.constant),
+            weights: family.weights.iter().map(|weight| scaled.value(weight)).collect(),
+            terms,
             equation: family.relation == Relation::Equal,
             whole: false,
             integer: model.columns().iter().map(|column| column.integer).collect(),
@@ -104,6 +105,21 @@ impl Compiled {
     /// Whether a column is integer.
     pub(crate) fn is_integer(&self, column: usize) -> bool {
         self.integer[column]
+    }
+}
+
+/// Exact numbers times a factor as floats; the last one is kept, for most are the same.
+struct Scaled {
+    factor: Number,
+    last: (Number, f64),
+}
+
+impl Scaled {
+    fn value(&mut self, number: &Number) -> f64 {
+        if *number != self.last.0 {
+            self.last = (number.clone(), nearest_f64(&(number * &self.factor)));
+        }
+        self.last.1
     }
 }
 

@@ -81,7 +81,7 @@ impl Equations {
             let (Some((_, first)), Some(side)) = (row.entries.first(), &row.lower) else {
                 continue;
             };
-            let key = row.entries.iter().map(|(column, a)| (*column, a / first)).collect();
+            let key = row.entries.iter().map(|(column, a)| (*column, quotient(a, first))).collect();
             right.insert(key, side / first);
         }
         Self { right }
@@ -92,7 +92,7 @@ impl Equations {
         let entries: Vec<(ColumnId, &Number)> =
             sum.iter().map(|(column, a)| (*column, a)).filter(|(_, a)| !a.is_zero()).collect();
         let Some((_, first)) = entries.first().copied() else { return Some(Number::ZERO) };
-        let key: Vec<_> = entries.iter().map(|(column, a)| (*column, *a / first)).collect();
+        let key: Vec<_> = entries.iter().map(|(column, a)| (*column, quotient(a, first))).collect();
         self.right.get(&key).map(|right| right * first)
     }
 
@@ -105,4 +105,9 @@ impl Equations {
         let split = || Some(self.value(&node.inside_first)? + self.value(&node.inside_second)?);
         self.value(&all).or_else(split)
     }
+}
+
+/// `a / b`, which is mostly a division by 1.
+fn quotient(a: &Number, b: &Number) -> Number {
+    if b.is_one() { a.clone() } else { a / b }
 }

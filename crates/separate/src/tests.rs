@@ -4,3 +4,4 @@ mod build;
 mod fractional;
 mod integral;
 mod others;
+mod random;

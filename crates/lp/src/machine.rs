@@ -11,6 +11,7 @@ use crate::dual::{self, DualState, DualStep};
 use crate::outcome::{Outcome, Ray, StopReason};
 use crate::primal::{self, PrimalState, PrimalStep};
 use crate::simplex::Limits;
+use crate::sparse::largest;
 use crate::state::{Core, Room};
 use crate::tolerances::{
     DUAL, LAST_ATTEMPT, MARKOWITZ, MARKOWITZ_CAREFUL, PRIMAL, PRIMAL_RELATIVE,
@@ -94,13 +95,7 @@ impl Machine {
 
     /// Sets how much violation counts as none.
     fn set_room(&self, core: &mut Core) {
-        let largest =
-            core.cost.iter().fold(
-                0.0,
-                |largest: f64, cost| {
-                    if cost.abs() > largest { cost.abs() } else { largest }
-                },
-            );
+        let largest = largest(core.cost.iter().copied());
         let factor = if self.attempt < LAST { 1.0 } else { LAST_ATTEMPT };
         core.room =
             Room { primal: factor * PRIMAL, dual: factor * DUAL + PRIMAL_RELATIVE * largest };

@@ -8,7 +8,7 @@
 use crate::basis::Status;
 use crate::lu::{BasisColumns, Factor};
 use crate::problem::Problem;
-use crate::sparse::{Matrix, SparseVector};
+use crate::sparse::{Matrix, SparseVector, largest};
 use crate::tolerances::{self, MARKOWITZ, PRIMAL_RELATIVE};
 
 /// Vectors kept between iterations so that nothing is allocated in them.
@@ -330,10 +330,7 @@ impl Core {
 
     /// Largest wrong-signed reduced cost.
     pub(crate) fn worst_reduced(&self) -> f64 {
-        (0..self.variables()).fold(0.0, |worst, j| {
-            let wrong = self.wrong_sign(j);
-            if wrong > worst { wrong } else { worst }
-        })
+        largest((0..self.variables()).map(|j| self.wrong_sign(j)))
     }
 
     /// ρ = B⁻ᵀe_r into `scratch.rho` and ρ[A, −I] into `scratch.row`.

@@ -7,6 +7,7 @@
 
 use crate::basis::Status;
 use crate::outcome::{Ray, Solution};
+use crate::sparse::largest;
 use crate::state::{Core, excess};
 use crate::tolerances::{VERIFY_DUAL, VERIFY_FARKAS, VERIFY_GAP, VERIFY_RAY, VERIFY_ROW};
 
@@ -38,9 +39,7 @@ impl DualBound {
 
 /// Scales multipliers so that the largest is 1, or all are whole where a small factor does that.
 fn make_whole(multipliers: &mut [f64]) {
-    let largest = multipliers
-        .iter()
-        .fold(0.0, |largest: f64, y| if y.abs() > largest { y.abs() } else { largest });
+    let largest = largest(multipliers.iter().copied());
     if largest == 0.0 {
         return;
     }
@@ -217,11 +216,7 @@ impl Core {
                 ray[j] = -direction * alpha;
             }
         }
-        let largest =
-            ray.iter().fold(
-                0.0,
-                |largest: f64, value| if value.abs() > largest { value.abs() } else { largest },
-            );
+        let largest = largest(ray.iter().copied());
         if largest > 0.0 {
             ray.iter_mut().for_each(|value| *value /= largest);
         }

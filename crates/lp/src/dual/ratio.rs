@@ -10,6 +10,7 @@
 //! Source: Fourer 1994; Maros 2003; Harris 1973.
 
 use crate::basis::Status;
+use crate::sparse::largest;
 use crate::state::Core;
 use crate::tolerances::{HARRIS_DUAL, PRIMAL, ratio_entry};
 use std::ops::Range;
@@ -127,13 +128,11 @@ fn profitable_groups(points: &[Breakpoint], slope: f64) -> Option<Vec<Range<usiz
 
 /// The last group whose largest pivot is not small beside the largest of all.
 fn best_group(points: &[Breakpoint], groups: &[Range<usize>]) -> usize {
-    let largest = |range: &Range<usize>| {
-        points[range.clone()].iter().reduce(larger_pivot).map_or(0.0, |point| point.alpha)
-    };
-    let overall =
-        groups.iter().map(largest).fold(0.0, |best, alpha| if alpha > best { alpha } else { best });
+    let pivot =
+        |range: &Range<usize>| largest(points[range.clone()].iter().map(|point| point.alpha));
+    let overall = largest(groups.iter().map(pivot));
     let enough = if overall < 10.0 { 0.1 * overall } else { 1.0 };
-    groups.iter().rposition(|range| largest(range) >= enough).unwrap_or(0)
+    groups.iter().rposition(|range| pivot(range) >= enough).unwrap_or(0)
 }
 
 /// The one with the larger pivot, on ties the lower index.

@@ -9,6 +9,7 @@
 
 use super::buckets::{Buckets, NONE};
 use super::pivots::{BasisColumns, Pivots};
+use crate::sparse::largest;
 use crate::tolerances::{FACTOR_DROP, MARKOWITZ_CANDIDATES, SINGULAR};
 
 /// A pivot that may be taken, with its Markowitz product.
@@ -76,13 +77,7 @@ impl Active {
 
     /// Sets the largest entry and the list of a row anew.
     fn refresh(&mut self, row: u32) {
-        let mut largest = 0.0;
-        for &(_, value) in &self.rows[row as usize] {
-            if value.abs() > largest {
-                largest = value.abs();
-            }
-        }
-        self.largest[row as usize] = largest;
+        self.largest[row as usize] = largest(self.rows[row as usize].iter().map(|entry| entry.1));
         self.row_lists.relocate(row, self.rows[row as usize].len());
     }
 

@@ -101,10 +101,7 @@ impl SparseVector {
 
     /// The largest size of a value.
     pub(crate) fn largest(&self) -> f64 {
-        self.iter().fold(
-            0.0,
-            |largest, (_, value)| if value.abs() > largest { value.abs() } else { largest },
-        )
+        super::largest(self.iter().map(|(_, value)| value))
     }
 
     /// The sum of squares.

@@ -112,41 +112,4 @@ impl Core {
             || self.lower[j] == f64::INFINITY
             || self.upper[j] == f64::NEG_INFINITY
     }
-
-    /// Moves boxed variables to the bound their reduced cost asks for; true when any moved.
-    pub(crate) fn flip_to_right_side(&mut self, tolerance: f64) -> bool {
-        let mut moved = false;
-        for j in 0..self.variables() {
-            if self.wrong_sign(j) > tolerance {
-                let to = match self.status[j] {
-                    Status::Lower if self.work_upper[j] < f64::INFINITY => Status::Upper,
-                    Status::Upper if self.work_lower[j] > f64::NEG_INFINITY => Status::Lower,
-                    _ => continue,
-                };
-                self.status[j] = to;
-                moved = true;
-            }
-        }
-        moved
-    }
-
-    /// c'x with working costs and the current values.
-    pub(crate) fn working_objective(&mut self) -> f64 {
-        let nonbasic: f64 =
-            (0..self.variables()).map(|j| self.work_cost[j] * self.nonbasic_value(j)).sum();
-        let basic: f64 = self
-            .head
-            .iter()
-            .zip(&self.basic)
-            .map(|(&j, &value)| self.work_cost[j as usize] * value)
-            .sum();
-        self.ticks += self.variables() as u64 / 4;
-        nonbasic + basic
-    }
-
-    /// y = B⁻ᵀc_B with the given costs, one a row.
-    pub(crate) fn given_duals(&mut self) -> Vec<f64> {
-        self.compute_duals(true);
-        (0..self.rows() as u32).map(|row| self.scratch.rho.get(row)).collect()
-    }
 }

@@ -30,6 +30,7 @@
 mod basis;
 mod change;
 mod check;
+mod compute;
 mod dual;
 mod lu;
 mod machine;

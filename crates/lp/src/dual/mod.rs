@@ -150,6 +150,23 @@ impl Core {
         }
     }
 
+    /// Moves boxed variables to the bound their reduced cost asks for; true when any moved.
+    pub(crate) fn flip_to_right_side(&mut self, tolerance: f64) -> bool {
+        let mut moved = false;
+        for j in 0..self.variables() {
+            if self.wrong_sign(j) > tolerance {
+                let to = match self.status[j] {
+                    Status::Lower if self.work_upper[j] < f64::INFINITY => Status::Upper,
+                    Status::Upper if self.work_lower[j] > f64::NEG_INFINITY => Status::Lower,
+                    _ => continue,
+                };
+                self.status[j] = to;
+                moved = true;
+            }
+        }
+        moved
+    }
+
     /// Moves variables to their other bound and the basic values along.
     fn apply_flips(&mut self, flips: &[u32]) {
         if flips.is_empty() {

@@ -1,0 +1,158 @@
+//! Values computed with the factors: basic values, duals, reduced costs, a row and a column of the tableau.
+
+use crate::basis::Status;
+use crate::sparse::{SparseVector, largest};
+use crate::state::{Core, excess, for_column};
+use crate::tolerances;
+
+impl Core {
+    /// x_B = −B⁻¹ N x_N, and the violations.
+    pub(crate) fn compute_basic(&mut self) {
+        let mut side = std::mem::take(&mut self.scratch.flips);
+        side.clear();
+        for j in 0..self.variables() {
+            let value = self.nonbasic_value(j);
+            if value != 0.0 {
+                self.ticks +=
+                    for_column(&self.matrix, j as u32, |row, entry| side.add(row, -entry * value));
+            }
+        }
+        self.ticks += self.factor.ftran(&mut side);
+        for position in 0..self.rows() {
+            self.basic[position] = side.get(position as u32);
+            self.note_violation(position);
+        }
+        side.clear();
+        self.scratch.flips = side;
+    }
+
+    /// Sets the stored violation of a position from its value.
+    pub(crate) fn note_violation(&mut self, position: usize) {
+        let j = self.head[position] as usize;
+        let excess =
+            excess(self.basic[position], self.work_lower[j], self.work_upper[j], self.room.primal);
+        self.violation[position] = excess * excess;
+    }
+
+    /// y = B⁻ᵀc_B into `scratch.rho`.
+    pub(crate) fn compute_duals(&mut self, given_costs: bool) {
+        let cost = if given_costs { &self.cost } else { &self.work_cost };
+        self.scratch.rho.clear();
+        for (position, &j) in (0u32..).zip(&self.head) {
+            if cost[j as usize] != 0.0 {
+                self.scratch.rho.set(position, cost[j as usize]);
+            }
+        }
+        self.ticks += self.factor.btran(&mut self.scratch.rho);
+    }
+
+    /// Reduced costs of the working costs, zero for basic variables.
+    pub(crate) fn compute_reduced(&mut self) {
+        self.compute_duals(false);
+        let (n, y) = (self.columns(), &self.scratch.rho);
+        for j in 0..self.status.len() {
+            self.reduced[j] = if self.status[j] == Status::Basic {
+                0.0
+            } else if j >= n {
+                self.work_cost[j] + y.get((j - n) as u32)
+            } else {
+                self.work_cost[j]
+                    - self.matrix.column(j).map(|(row, value)| value * y.get(row)).sum::<f64>()
+            };
+        }
+        self.ticks += self.matrix.nonzeros() as u64;
+    }
+
+    /// How far a nonbasic variable's reduced cost has the wrong sign; zero when it has not or the
+    /// variable is fixed.
+    pub(crate) fn wrong_sign(&self, j: usize) -> f64 {
+        let d = self.reduced[j];
+        let wrong = match self.status[j] {
+            Status::Basic => return 0.0,
+            Status::Lower => -d,
+            Status::Upper => d,
+            Status::Free => d.abs(),
+        };
+        if wrong > 0.0 && !self.is_fixed(j) { wrong } else { 0.0 }
+    }
+
+    /// True when no basic variable is out of its working bounds.
+    pub(crate) fn is_primal_feasible(&self) -> bool {
+        self.violation.iter().all(|&violation| violation == 0.0)
+    }
+
+    /// Largest wrong-signed reduced cost.
+    pub(crate) fn worst_reduced(&self) -> f64 {
+        largest((0..self.variables()).map(|j| self.wrong_sign(j)))
+    }
+
+    /// ρ = B⁻ᵀe_r into `scratch.rho` and ρ[A, −I] into `scratch.row`.
+    pub(crate) fn compute_row(&mut self, position: u32) {
+        let mut rho = std::mem::take(&mut self.scratch.rho);
+        rho.clear();
+        rho.set(position, 1.0);
+        self.ticks += self.factor.btran(&mut rho);
+        self.price(&rho);
+        self.scratch.rho = rho;
+    }
+
+    /// ρ[A, −I] into `scratch.row`, row by row of A.
+    fn price(&mut self, rho: &SparseVector) {
+        let n = self.columns() as u32;
+        let row = &mut self.scratch.row;
+        row.clear();
+        for (i, multiplier) in rho.iter() {
+            if multiplier != 0.0 {
+                row.add(n + i, -multiplier);
+                for (j, value) in self.matrix.row(i as usize) {
+                    row.add(j, multiplier * value);
+                }
+            }
+        }
+        self.ticks += row.count() as u64;
+    }
+
+    /// B⁻¹a_j into `scratch.column`.
+    pub(crate) fn compute_column(&mut self, j: u32) {
+        let mut column = std::mem::take(&mut self.scratch.column);
+        column.clear();
+        for_column(&self.matrix, j, |row, value| column.set(row, value));
+        self.ticks += self.factor.ftran(&mut column);
+        self.scratch.column = column;
+    }
+
+    /// True when the pivot of `scratch.column` is large enough beside the column and agrees with
+    /// the one of `scratch.row`.
+    pub(crate) fn pivot_is_sound(&self, position: u32, entering: u32) -> bool {
+        let by_column = self.scratch.column.get(position);
+        let by_row = self.scratch.row.get(entering);
+        let (least, agreement) = if self.factor.updates() > 0 {
+            (tolerances::PIVOT_AFTER_UPDATES, tolerances::AGREEMENT_AFTER_UPDATES)
+        } else {
+            (tolerances::PIVOT_FRESH, tolerances::AGREEMENT_FRESH)
+        };
+        let largest = self.scratch.column.largest();
+        let least = if largest < 1.0 { least * largest } else { least };
+        by_column.abs() >= least && (by_column - by_row).abs() <= agreement * by_column.abs()
+    }
+
+    /// c'x with working costs and the current values.
+    pub(crate) fn working_objective(&mut self) -> f64 {
+        let nonbasic: f64 =
+            (0..self.variables()).map(|j| self.work_cost[j] * self.nonbasic_value(j)).sum();
+        let basic: f64 = self
+            .head
+            .iter()
+            .zip(&self.basic)
+            .map(|(&j, &value)| self.work_cost[j as usize] * value)
+            .sum();
+        self.ticks += self.variables() as u64 / 4;
+        nonbasic + basic
+    }
+
+    /// y = B⁻ᵀc_B with the given costs, one a row.
+    pub(crate) fn given_duals(&mut self) -> Vec<f64> {
+        self.compute_duals(true);
+        (0..self.rows() as u32).map(|row| self.scratch.rho.get(row)).collect()
+    }
+}

@@ -14,7 +14,7 @@
 //! | item | use it for |
 //! |---|---|
 //! | [`ExactRows`] | the rows of a relaxation, kept over many nodes |
-//! | [`bound`] | a proved bound from the multipliers of a relaxation |
+//! | [`bound()`] | a proved bound from the multipliers of a relaxation |
 //! | [`infeasible`] | whether a ray proves that a relaxation has no point |
 //! | [`Point`], [`violations`] | a point against every written row and bound |
 //!

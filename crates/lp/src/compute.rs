@@ -1,4 +1,5 @@
-//! Values computed with the factors: basic values, duals, reduced costs, a row and a column of the tableau.
+//! Values computed with the factors: basic values, duals, reduced costs, a row and a column of the
+//! tableau.
 
 use crate::basis::Status;
 use crate::sparse::{SparseVector, largest};

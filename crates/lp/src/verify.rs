@@ -48,8 +48,13 @@ fn make_whole(multipliers: &mut [f64]) {
         multipliers.iter().all(|y| (y * factor - (y * factor).round()).abs() <= VERIFY_RAY)
     };
     if let Some(factor) = (1..=WHOLE_FACTOR).map(f64::from).find(|&factor| is_whole(factor)) {
-        multipliers.iter_mut().for_each(|y| *y = (*y * factor).round());
+        multipliers.iter_mut().for_each(|y| *y = (*y * factor).round() + 0.0);
     }
+}
+
+/// Values in other units, without negative zeros.
+fn released(values: &[f64], units: &[f64], convert: fn(f64, f64) -> f64) -> Vec<f64> {
+    values.iter().zip(units).map(|(&value, &unit)| convert(value, unit) + 0.0).collect()
 }
 
 impl Core {
@@ -184,23 +189,27 @@ impl Core {
     }
 
     /// A solution in the caller's units; the objective is the same in both.
-    fn in_given_units(&self, mut solution: Solution) -> Solution {
-        let (columns, rows) = self.unit.split_at(self.columns());
-        solution.x.iter_mut().zip(columns).for_each(|(value, unit)| *value *= unit);
-        solution.reduced_costs.iter_mut().zip(columns).for_each(|(value, unit)| *value /= unit);
-        solution.activity.iter_mut().zip(rows).for_each(|(value, unit)| *value *= unit);
-        solution.duals.iter_mut().zip(rows).for_each(|(value, unit)| *value /= unit);
-        solution
+    fn in_given_units(&self, solution: Solution) -> Solution {
+        let n = self.columns();
+        Solution {
+            objective: solution.objective + 0.0,
+            x: released(&solution.x, &self.unit, |x, unit| x * unit),
+            activity: released(&solution.activity, &self.unit[n..], |activity, unit| {
+                activity * unit
+            }),
+            duals: self.released_duals(&solution.duals),
+            reduced_costs: released(&solution.reduced_costs, &self.unit, |d, unit| d / unit),
+        }
     }
 
     /// Multipliers in the caller's units.
     pub(crate) fn released_duals(&self, duals: &[f64]) -> Vec<f64> {
-        duals.iter().zip(&self.unit[self.columns()..]).map(|(y, unit)| y / unit).collect()
+        released(duals, &self.unit[self.columns()..], |y, unit| y / unit)
     }
 
     /// Values of the columns in the caller's units.
     fn released_point(&self, x: &[f64]) -> Vec<f64> {
-        x.iter().zip(&self.unit).map(|(x, unit)| x * unit).collect()
+        released(x, &self.unit, |x, unit| x * unit)
     }
 
     /// How the columns move while `entering` does, scaled so that the fastest moves by 1.

@@ -1,8 +1,9 @@
 //! Warm solves against cold ones over chains of changes, and bits from a rebuilt solver.
 
 use crate::families::{INFINITY, KINDS, generate};
+use crate::instances::{facilities, multi_commodity, packing, position_labels, single_commodity};
 use crate::random::Random;
-use crate::shadow::{Shadow, new_row};
+use crate::shadow::{Shadow, Verdict, new_row};
 use hullward_lp::{Basis, Col, Limits, Outcome, Problem, RowId, Simplex};
 
 /// One change, made to the solver and to the shadow.
@@ -89,6 +90,41 @@ fn warm_and_cold_agree_over_chains_of_changes() {
             }
         }
     }
+}
+
+/// Columns fixed at 0 or 1 one after the other, as a search does, until nothing is feasible; then
+/// all are freed.
+fn dive(shadow: &mut Shadow, name: &str) {
+    let mut random = Random::new(17);
+    let free = (shadow.lower.clone(), shadow.upper.clone());
+    let mut simplex = shadow.simplex();
+    for step in 0..30 {
+        let name = format!("{name}, step {step}");
+        let warm = shadow.verdict(simplex.solve(Limits::default()), &name);
+        let cold = shadow.verdict(shadow.simplex().solve(Limits::default()), &name);
+        assert!(warm.agrees(cold, 1e-9), "{name}: warm {warm:?}, cold {cold:?}");
+        if warm == Verdict::Infeasible {
+            (shadow.lower, shadow.upper) = free.clone();
+            for (j, (&lower, &upper)) in (0u32..).zip(free.0.iter().zip(&free.1)) {
+                simplex.set_bounds(Col(j), lower, upper);
+            }
+        } else {
+            check_bits(shadow, &simplex.basis(), simplex.outcome().unwrap(), &name);
+            let column = random.integer(0, shadow.cost.len() as i64 / 2) as usize;
+            let at = if random.one_in(3) { 1.0 } else { 0.0 };
+            set_bounds(shadow, &mut simplex, column, (at, at));
+        }
+    }
+}
+
+#[test]
+fn dives_into_known_formulations() {
+    dive(&mut position_labels(9, 3), "position labels");
+    dive(&mut single_commodity(8, 3), "one commodity");
+    dive(&mut multi_commodity(6, 3), "a commodity a stop");
+    dive(&mut facilities(5, 9, true, 3), "facilities, strong");
+    dive(&mut facilities(5, 9, false, 3), "facilities, weak");
+    dive(&mut packing(9, 5, 3), "packing");
 }
 
 #[test]

@@ -164,7 +164,8 @@ impl Core {
         Ok(activities.into_iter().map(|(activity, _)| activity).collect())
     }
 
-    /// The solution of the current basis (given costs and bounds), checked.
+    /// The solution of the current basis (given costs and bounds), checked, in the caller's units.
+    /// The objective is the same in both.
     pub(crate) fn solution(&self) -> Result<Solution, String> {
         let n = self.columns();
         let x = self.point();
@@ -179,27 +180,13 @@ impl Core {
         if gap.is_nan() || gap.abs() > VERIFY_GAP * (1.0 + size + bound.size) {
             return Err("primal and dual objective differ".to_owned());
         }
-        Ok(self.in_given_units(Solution {
-            objective,
-            x,
-            activity,
-            duals,
-            reduced_costs: self.reduced[..n].to_vec(),
-        }))
-    }
-
-    /// A solution in the caller's units; the objective is the same in both.
-    fn in_given_units(&self, solution: Solution) -> Solution {
-        let n = self.columns();
-        Solution {
-            objective: solution.objective + 0.0,
-            x: released(&solution.x, &self.unit, |x, unit| x * unit),
-            activity: released(&solution.activity, &self.unit[n..], |activity, unit| {
-                activity * unit
-            }),
-            duals: self.released_duals(&solution.duals),
-            reduced_costs: released(&solution.reduced_costs, &self.unit, |d, unit| d / unit),
-        }
+        Ok(Solution {
+            objective: objective + 0.0,
+            activity: released(&activity, &self.unit[n..], |activity, unit| activity * unit),
+            duals: self.released_duals(&duals),
+            reduced_costs: released(&self.reduced[..n], &self.unit, |d, unit| d / unit),
+            x: self.released_point(&x),
+        })
     }
 
     /// Multipliers in the caller's units.

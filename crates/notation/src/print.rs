@@ -34,8 +34,13 @@ fn part(out: &mut String, word: &str, lines: &[Line]) {
         return;
     }
     let _ = writeln!(out, "{word}");
-    for one in lines {
-        let _ = writeln!(out, "  {}", line(one));
+    for (i, one) in lines.iter().enumerate() {
+        let printed = line(one);
+        // a line that begins with an operator would go on with the one before
+        if i > 0 && printed.starts_with(['−', '¬']) {
+            out.push('\n');
+        }
+        let _ = writeln!(out, "  {printed}");
     }
 }
 
@@ -53,9 +58,18 @@ pub fn line(line: &Line) -> String {
         let _ = write!(out, "  \\tag{{{}}}", label.text);
     }
     if let Some(remark) = &line.remark {
-        let _ = write!(out, "  \\text{{{remark}}}");
+        let _ = match reads_as_remark(remark) {
+            true => write!(out, "  {remark}"),
+            false => write!(out, "  \\text{{{remark}}}"),
+        };
     }
     out
+}
+
+/// Whether a remark reads as one after two spaces.
+fn reads_as_remark(remark: &str) -> bool {
+    let first = crate::lex::lex(remark, 0).first().map(|token| token.kind);
+    first == Some(crate::lex::token::Kind::Word) && !remark.contains(['#', '%', '\\'])
 }
 
 /// A clause of a quantifier: `(i,j) ∈ A : i ≠ r`.

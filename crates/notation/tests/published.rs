@@ -1,6 +1,13 @@
 //! The shipped round-trip formulations on a small instance: rows, columns, and exactly the
 //! right integer points, by enumeration.
+#![allow(
+    clippy::unwrap_used,
+    clippy::expect_used,
+    clippy::panic,
+    reason = "a test ends where it fails"
+)]
 
+#[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
 mod common;
 
 use std::collections::BTreeSet;

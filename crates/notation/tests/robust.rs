@@ -1,6 +1,13 @@
 //! What must hold for every text: no panic, spans on character boundaries, an end in
 //! reasonable time, and a printer that the parser reads back.
+#![allow(
+    clippy::unwrap_used,
+    clippy::expect_used,
+    clippy::panic,
+    reason = "a test ends where it fails"
+)]
 
+#[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
 mod common;
 
 use common::{kitchen, shown};
@@ -203,7 +210,11 @@ fn reads_back(text: &str) -> Result<(), TestCaseError> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig { cases: 400, ..ProptestConfig::default() })]
+    #![proptest_config(ProptestConfig {
+        cases: 400,
+        failure_persistence: None,
+        ..ProptestConfig::default()
+    })]
 
     #[test]
     fn any_text_ends_without_panic(text in "\\PC{0,200}") {
@@ -231,7 +242,7 @@ proptest! {
 
 #[test]
 fn deep_nesting_is_one_error() {
-    for open in ["(", "{", "|", "−", "⌊", "x_{", "¬", "Σ_{i ∈ V} (", "\\frac{", "2^{", "max("]
+    for open in ["(", "{", "|", "−", "⌊", "x_{", "(¬", "Σ_{i ∈ V} (", "\\frac{", "2^{", "max("]
     {
         let text = format!("minimise\n{}", open.repeat(100_000));
         let parsed = parse(&text);
@@ -268,9 +279,10 @@ fn noise_and_long_names_end() {
     }
     let huge = "(".repeat(5_000_000);
     assert_eq!(parse(&huge).diagnostics[0].code, "syntax.too-long");
-    let name = "q".repeat(1_000_000);
+    let name = "q".repeat(600_000);
     let text = format!("minimise\n  {name}\nsubject to\n  x_{{{name}}} ≥ 1  ({name})\n");
     let (_, found) = check(&parse(&text).tree);
-    assert!(found.iter().any(|d| d.code == "name.undeclared"));
+    let short: Vec<String> = found.iter().map(|d| d.code.to_owned()).collect();
+    assert!(short.contains(&"name.undeclared".to_owned()), "{short:?}");
     assert!(found.iter().all(|d| d.message.len() < 400));
 }

@@ -1,6 +1,13 @@
 //! The same formulation in the three spellings, mixed, and pasted from a paper: one tree, one
 //! model.
+#![allow(
+    clippy::unwrap_used,
+    clippy::expect_used,
+    clippy::panic,
+    reason = "a test ends where it fails"
+)]
 
+#[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
 mod common;
 
 use common::{made, stops};

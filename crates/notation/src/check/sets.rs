@@ -159,8 +159,10 @@ impl Checker<'_> {
         rest: &[(Multiplicative, Expression)],
         span: Span,
     ) -> Option<Typed> {
-        let Form::Set(mut roots) = first.form else {
-            return self.report(message::expected("a set", first.form.noun(), first.span));
+        let mut roots = match first.form {
+            Form::Set(roots) => roots,
+            Form::Empty => Vec::new(),
+            form => return self.report(message::expected("a set", form.noun(), first.span)),
         };
         let mut node = first.node;
         for (operator, operand) in rest {

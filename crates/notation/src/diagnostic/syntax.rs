@@ -70,3 +70,12 @@ pub(crate) fn lower_limit(span: Span) -> Diagnostic {
         "a sum with an upper limit needs “index = first” below it",
     )
 }
+
+pub(crate) fn joined(span: Span) -> Diagnostic {
+    Diagnostic::error(
+        "syntax.joined",
+        span,
+        "the minus can begin a new line or go on with the one before",
+    )
+    .mend("put “;” before it for a new line, or end the line before with the minus")
+}

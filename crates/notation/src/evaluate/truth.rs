@@ -87,7 +87,10 @@ impl Evaluator {
             return Ok(Guard::member(key[0], inside));
         }
         if self.depends_on_subset(set) {
-            return fail(subsets::nonlinear(Span::default()));
+            let members = self.members_by_subset(set, env)?;
+            let found = members.iter().find(|(element, _)| *element == key[0]);
+            let guard = found.map_or(Guard::known(false), |&(e, within)| Guard::member(e, within));
+            return Ok(if inside { guard } else { guard.not() });
         }
         Ok(Guard::known(self.set(set, env)?.contains(&key) == inside))
     }

@@ -25,8 +25,9 @@ struct Frame {
     /// The members to visit, when not all.
     chosen: Option<Rc<Vec<u32>>>,
     next: usize,
-    /// Whether the set is the quantified subset (its ground set is walked).
-    subset: bool,
+    /// For a set made from the quantified subset: whether each member belongs to it when it
+    /// is in the subset, or when it is not.
+    inside: Option<Vec<bool>>,
     /// The guard of the steps before and of the member at hand.
     before: Guard,
     after: Guard,
@@ -81,12 +82,14 @@ impl Walk {
     fn open(&self, step: &Step, evaluator: &Evaluator, env: &mut Environment) -> Evaluated<Frame> {
         let before = self.frames.last().map_or(Guard::ALWAYS, |f| f.after);
         let mut frame =
-            Frame { set: None, chosen: None, next: 0, subset: false, before, after: before };
+            Frame { set: None, chosen: None, next: 0, inside: None, before, after: before };
         let Step::Over { pattern, set, .. } = step else { return Ok(frame) };
-        frame.subset = matches!(set, Node::Subset);
-        let set = match (&evaluator.ground, frame.subset) {
-            (Some(ground), true) => ground.clone(),
-            _ => evaluator.set(set, env)?,
+        let set = if evaluator.depends_on_subset(set) {
+            let members = evaluator.members_by_subset(set, env)?;
+            frame.inside = Some(members.iter().map(|(_, inside)| *inside).collect());
+            Rc::new(Set::new(1, members.into_iter().map(|(element, _)| vec![element])))
+        } else {
+            evaluator.set(set, env)?
         };
         let (mut mask, mut key) = (0_u32, Vec::new());
         for (place, one) in pattern.iter().enumerate().take(32) {
@@ -175,8 +178,8 @@ impl Frame {
             }
         }
         self.after = self.before;
-        if self.subset {
-            let Some(after) = self.before.and(Guard::member(member[0], true)) else {
+        if let Some(inside) = &self.inside {
+            let Some(after) = self.before.and(Guard::member(member[0], inside[at])) else {
                 return fail(subsets::nonlinear(span));
             };
             self.after = after;

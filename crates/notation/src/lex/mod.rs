@@ -10,8 +10,13 @@ use token::{Gap, Kind, Token};
 
 /// All tokens of `text` from byte `start` on, ending with one of kind `End`. `O(bytes)`.
 pub(crate) fn lex(text: &str, start: usize) -> Vec<Token> {
+    lex_nested(text, start, 0)
+}
+
+/// The tokens of an argument that stands `depth` arguments deep.
+fn lex_nested(text: &str, start: usize, depth: u32) -> Vec<Token> {
     let mut lexer =
-        Lexer { text, at: start, gap: Gap::default(), tokens: Vec::new(), environment: 0 };
+        Lexer { text, at: start, gap: Gap::default(), tokens: Vec::new(), environment: 0, depth };
     lexer.gap.add(Gap::NEWLINE);
     while lexer.at < text.len() {
         let before = lexer.at;
@@ -31,6 +36,7 @@ struct Lexer<'t> {
     tokens: Vec<Token>,
     /// How many TeX environments are open, in which a line break ends nothing.
     environment: u32,
+    depth: u32,
 }
 
 impl Lexer<'_> {

@@ -2,7 +2,7 @@
 
 use super::table;
 use super::token::{Gap, Kind};
-use super::{Lexer, lex};
+use super::{Lexer, lex_nested};
 
 impl Lexer<'_> {
     pub(super) fn backslash(&mut self) {
@@ -109,6 +109,7 @@ impl Lexer<'_> {
                 self.environment = self.environment.saturating_sub(1);
                 self.push(Kind::Break, start, end);
             }
+            "substack" => self.relex(inner, end - 1 - inner.len()),
             "pmod" => {
                 self.push(Kind::Modulo, start, end);
                 self.relex(inner, end - 1 - inner.len());
@@ -200,14 +201,24 @@ impl Lexer<'_> {
         }
     }
 
+    /// The tokens of an argument; a line break in it separates as a comma does.
     fn relex(&mut self, inner: &str, offset: usize) {
-        for mut token in lex(inner, 0) {
-            if token.kind != Kind::End {
-                let shift = u32::try_from(offset).unwrap_or(u32::MAX);
-                token.span.start = token.span.start.saturating_add(shift);
-                token.span.end = token.span.end.saturating_add(shift);
-                self.tokens.push(token);
+        if self.depth > 4 {
+            return self.push(Kind::Unknown, offset, offset + inner.len());
+        }
+        let shift = u32::try_from(offset).unwrap_or(u32::MAX);
+        for mut token in lex_nested(inner, 0, self.depth + 1) {
+            if token.kind == Kind::End {
+                continue;
             }
+            token.span.start = token.span.start.saturating_add(shift);
+            token.span.end = token.span.end.saturating_add(shift);
+            if token.kind == Kind::Break {
+                token.kind = Kind::Comma;
+            }
+
+            token.gap = std::mem::take(&mut self.gap);
+            self.tokens.push(token);
         }
     }
 

@@ -51,6 +51,17 @@ enum Part {
     Statements,
 }
 
+/// What is known of a line while its end is sought.
+#[derive(Debug, Default)]
+struct Scan {
+    depth: u32,
+    quantified: bool,
+    /// Whether a relation has been seen before any quantifier.
+    related: bool,
+    /// A minus at the start of a line of text, after a relation.
+    joined: Option<usize>,
+}
+
 impl Parser<'_> {
     pub(super) fn document(&mut self) -> Formulation {
         let mut tree = Formulation::default();
@@ -58,7 +69,7 @@ impl Parser<'_> {
         while self.at + 1 < self.tokens.len() {
             let before = self.at;
             self.end = self.tokens.len() - 1;
-            if let Some(next) = self.part_word() {
+            if let Some(next) = self.part_word(part) {
                 part = next;
             } else if matches!(self.peek(), T::Break | T::Comma | T::Period) {
                 self.bump();
@@ -71,8 +82,14 @@ impl Parser<'_> {
     }
 
     /// A word that opens a part, at the start of a line.
-    fn part_word(&mut self) -> Option<Part> {
+    fn part_word(&mut self, part: Part) -> Option<Part> {
         let start = self.here();
+        // in the other parts `min(a, b)` and `min_{i ∈ V} a_i` are numbers
+        let opens = matches!(self.ahead(1), T::LeftParen | T::LeftBrace | T::Underscore);
+        let function = opens && matches!(part, Part::Definitions | Part::Statements);
+        if function && matches!(self.peek(), T::Min | T::Max) {
+            return None;
+        }
         let part = match self.peek() {
             T::Data => Part::Data,
             T::Definitions => Part::Definitions,
@@ -160,23 +177,39 @@ impl Parser<'_> {
     }
 
     /// The end of the line that starts here. `O(tokens of the line)`.
-    fn scan(&self) -> (usize, usize) {
-        let (mut depth, mut quantified) = (0_u32, false);
+    fn scan(&mut self) -> (usize, usize) {
+        let mut scan = Scan::default();
         let last = self.tokens.len() - 1;
         for i in self.at..last {
-            let token = &self.tokens[i];
-            if i > self.at && self.line_ends_before(i, depth, quantified) {
+            let kind = self.tokens[i].kind;
+            if i > self.at && self.line_ends_before(i, scan.depth, scan.quantified) {
                 return (i, i);
             }
-            match token.kind {
+            match kind {
                 T::Break if i > self.at => return (i, i),
-                T::ForAll => quantified = true,
-                kind if kind.opens() => depth += 1,
-                kind if kind.closes() => depth = depth.saturating_sub(1),
+                T::ForAll => scan.quantified = true,
+                T::Minus
+                    if i > self.at && scan.depth == 0 && self.on_new_line(i) && scan.related =>
+                {
+                    scan.joined.get_or_insert(i);
+                }
+                kind if kind.opens() => scan.depth += 1,
+                kind if kind.closes() => scan.depth = scan.depth.saturating_sub(1),
+                kind if kind.is_relation() && scan.depth == 0 && !scan.quantified => {
+                    scan.related = true;
+                    if let Some(at) = scan.joined.take() {
+                        let span = self.tokens[at].span;
+                        self.report(message::joined(span));
+                    }
+                }
                 _ => {}
             }
         }
         (last, last)
+    }
+
+    fn on_new_line(&self, i: usize) -> bool {
+        self.tokens[i].gap.has(Gap::NEWLINE) && !self.tokens[i - 1].kind.continues()
     }
 
     fn line_ends_before(&self, i: usize, depth: u32, quantified: bool) -> bool {
@@ -191,7 +224,11 @@ impl Parser<'_> {
         if token.kind == T::SuchThat && (line_break || !quantified) && depth == 0 {
             return true;
         }
-        line_break && depth == 0 && !token.kind.continues() && !self.tokens[i - 1].kind.continues()
+        if !line_break || depth > 0 || self.tokens[i - 1].kind.continues() {
+            return false;
+        }
+        // nothing is added to what stands behind a quantifier
+        !token.kind.continues() || quantified && matches!(token.kind, T::Plus | T::Minus)
     }
 
     /// The end of what is read of a `data` line that starts here, and of its remark.

@@ -147,8 +147,9 @@ impl Parser<'_> {
         let span = Span { start: self.tokens[open].span.start, end: self.tokens[last].span.end };
         let text = span.of(self.text);
         let inner = text[1..text.len() - 1].trim();
-        let set_off = gap.has(Gap::WIDE) || gap.has(Gap::NEWLINE) || gap.has(Gap::QUAD);
-        if !is_label(inner, set_off) {
+        let apart = gap.has(Gap::WIDE) || gap.has(Gap::NEWLINE) || gap.has(Gap::QUAD);
+        let quantified = self.tokens[self.at..open].iter().any(|t| t.kind == T::ForAll);
+        if !is_label(inner, apart || quantified) {
             return None;
         }
         self.end = open;
@@ -156,17 +157,18 @@ impl Parser<'_> {
     }
 }
 
-/// Words, numbers, spaces and hyphens; a single letter or a difference only where it is set off.
-fn is_label(inner: &str, set_off: bool) -> bool {
+/// Words, numbers, spaces and hyphens. A single letter counts only where it cannot be meant
+/// as a factor, a difference such as `n-1` never.
+fn is_label(inner: &str, alone: bool) -> bool {
     let plain = |c: char| c.is_alphanumeric() || " -'.’/:".contains(c);
-    if inner.is_empty() || !inner.chars().all(plain) || !inner.starts_with(char::is_alphanumeric) {
+    if !inner.chars().all(plain) || !inner.starts_with(char::is_alphanumeric) {
         return false;
     }
     let number = inner.chars().all(|c| c.is_ascii_digit() || c == '.');
-    let difference = inner.split(['-', '/']).all(|piece| piece.trim().chars().count() < 2);
-    number
-        || (inner.contains(char::is_alphabetic)
-            && (set_off && !inner.contains(" - ") || !difference))
+    let word = inner.split(['-', '/', ' ']).any(|piece| piece.chars().count() > 1);
+    let letters = inner.contains(char::is_alphabetic);
+    let single = alone && inner.chars().count() == 1;
+    number || letters && (word && !inner.contains(" - ") || single)
 }
 
 /// The relation that a token stands for.

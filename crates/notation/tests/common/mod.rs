@@ -1,10 +1,9 @@
 //! What the tests share: small instances, and models that must come out.
-#![allow(dead_code, reason = "each test file uses its own part")]
 
 use std::collections::BTreeMap;
 
 use hullward_notation::{Diagnostic, States, model as expand};
-use instance::{Datum, Instance, Reader};
+use instance::{Datum, Instance};
 use model::{Model, Number};
 
 const NAMES: [&str; 6] = ["Ash", "Birch", "Cedar", "Dogwood", "Elm", "Fir"];

@@ -34,7 +34,7 @@ pub struct Branch {
 /// How a node ended (or stands).
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum NodeState {
-    /// Not solved yet.
+    /// Not solved yet; or the root where no search was asked for.
     Open,
     /// Solved and branched on (the root: or to be branched on).
     Branched,

@@ -1,9 +1,11 @@
 //! Candidates for solutions: the relaxation's own point, its rounding, and round trips.
 
+use std::collections::BTreeSet;
+
 use model::ColumnId;
 
 use crate::event::{Event, NodeId};
-use crate::relaxation::{Addition, RowOrigin};
+use crate::relaxation::{Addition, RowOrigin, direction};
 use crate::search::{Incumbent, Job, Progress, Purpose, Search};
 use crate::solution::{Solution, Verdict};
 use crate::target::signed;
@@ -35,10 +37,11 @@ impl Search {
         if rounded == self.last_rounding {
             return self.proceed();
         }
-        let best = self.target.best().filter(|_| self.incumbent.is_some());
-        let direction = crate::relaxation::direction(&self.model);
-        let worse = |value: f64| best.is_some_and(|best| direction * value >= best);
-        let promising = self.checker.promising(&rounded, |value| !worse(value));
+        let best = self.target.best();
+        let direction = direction(&self.model);
+        let found = self.incumbent.is_some();
+        let promising =
+            self.checker.promising(&rounded, |value| wanted(direction * value, best, found));
         self.last_rounding.clone_from(&rounded);
         if !promising {
             return self.proceed();
@@ -57,6 +60,7 @@ impl Search {
         let Job::Tour(tour) = std::mem::replace(&mut self.job, Job::None) else { return };
         self.ledger.ticks += tour.ticks();
         let (Some(trip), Some(used)) = (&self.trip, tour.columns()) else { return };
+        let used: BTreeSet<ColumnId> = used.into_iter().collect();
         let arcs = self.model.columns()[trip.arcs[0].2.index()].variable;
         let columns = self.model.variables()[arcs.index()].columns.clone().map(ColumnId);
         let value = |column: ColumnId| if used.contains(&column) { 1.0 } else { 0.0 };
@@ -119,9 +123,9 @@ impl Search {
     fn accept(&mut self, solution: Solution, purpose: Purpose) -> f64 {
         let exact = signed(&self.model, solution.value.clone());
         let internal = model::nearest_f64(&exact);
-        let better = match (&self.incumbent, self.target.best()) {
-            (None, Some(cutoff)) => internal <= cutoff + NEAR * (1.0 + cutoff.abs()),
-            _ => self.target.improves(&exact),
+        let better = match self.incumbent {
+            Some(_) => self.target.improves(&exact),
+            None => wanted(internal, self.target.best(), false),
         };
         if !better {
             return internal;
@@ -134,4 +138,12 @@ impl Search {
         self.drop_closed();
         internal
     }
+}
+
+/// Whether a solution of this internal value would be taken: one better than the incumbent
+/// (`found`), or the first one that is not worse than the cut-off.
+fn wanted(value: f64, best: Option<f64>, found: bool) -> bool {
+    best.is_none_or(
+        |best| if found { value < best } else { value <= best + NEAR * (1.0 + best.abs()) },
+    )
 }

@@ -16,6 +16,9 @@ const ROOT_ROUNDS: u32 = 10_000;
 /// separated to the end.
 const NODE_ROUNDS: u32 = 100;
 
+/// How far along a ray rows are looked for that bound it, in the units of its largest column.
+const FAR: f64 = 1e6;
+
 impl Search {
     /// One step of the job in hand, of about `ticks`.
     pub(crate) fn step(&mut self, ticks: u64) -> Option<Progress> {
@@ -143,7 +146,10 @@ impl Search {
                 let ray = ray.multipliers.clone();
                 self.infeasible(&ray)
             }
-            Outcome::Unbounded { .. } => self.unbounded(),
+            Outcome::Unbounded { point, ray } => {
+                let (point, ray) = (point.clone(), ray.clone());
+                self.unbounded(&point, &ray)
+            }
             Outcome::Stopped { reason: StopReason::Iterations, .. } => self.out_of_iterations(),
             Outcome::Stopped { reason: StopReason::Numerical(why), .. } => {
                 let why = why.clone();
@@ -175,10 +181,8 @@ impl Search {
     /// The round of separation has ended.
     fn separated(&mut self) -> Option<Progress> {
         let found = self.rounds.take();
-        if found.is_empty() {
-            return self.converged();
-        }
         match self.add_rows(found) {
+            Ok(0) if self.hand.as_ref()?.point.is_none() => self.root_unbounded(),
             Ok(0) => self.converged(),
             Ok(_) => self.solve(),
             Err(why) => self.unsolved(&why),
@@ -229,11 +233,21 @@ impl Search {
         self.round(&x)
     }
 
-    fn unbounded(&mut self) -> Option<Progress> {
-        if self.hand.as_ref()?.node == NodeId::ROOT {
+    /// The LP in hand falls without limit. At the root a row on demand may still bound it: one
+    /// is looked for far along the ray.
+    fn unbounded(&mut self, point: &[f64], ray: &[f64]) -> Option<Progress> {
+        if self.hand.as_ref()?.node != NodeId::ROOT {
+            return self.unsolved("its relaxation seems unbounded, though its parent's is bounded");
+        }
+        let longest =
+            ray.iter().fold(0.0, |most: f64, r| if r.abs() > most { r.abs() } else { most });
+        if self.rounds.is_empty() || longest == 0.0 {
             return self.root_unbounded();
         }
-        self.unsolved("its relaxation seems unbounded, though its parent's is bounded")
+        let far: Vec<f64> = point.iter().zip(ray).map(|(x, r)| x + r * (FAR / longest)).collect();
+        self.rounds.start(&far);
+        self.job = Job::Separate;
+        None
     }
 
     fn out_of_iterations(&mut self) -> Option<Progress> {

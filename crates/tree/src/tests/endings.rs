@@ -98,6 +98,34 @@ fn an_unbounded_root_ends_the_search() {
 }
 
 #[test]
+fn a_row_on_demand_may_bound_the_root() {
+    let mut builder = ModelBuilder::new("t", Sense::Maximise);
+    let free = ColumnSpec { lower: Some(Number::ZERO), upper: None, cost: whole(1), integer: true };
+    let x = builder.column(&[], &free).unwrap();
+    let y = builder.column(&[], &free).unwrap();
+    builder.row(&[], row(&[(x, 1), (y, -1)], None, Some(2))).unwrap();
+    builder.family("cap", model::FamilyState::OnDemand, false);
+    builder.row(&[], row(&[(x, 2), (y, 2)], None, Some(7))).unwrap();
+    let model = Rc::new(builder.build());
+    let (events, summary) = run(&model, &Settings::default(), u64::MAX);
+    assert_eq!((summary.status, summary.incumbent), (Status::Optimal, Some(3.0)));
+    assert_eq!(run(&model, &Settings::default(), 1).0, events);
+}
+
+#[test]
+fn a_cutoff_of_a_maximisation_is_an_upper_value() {
+    let costs = Random(31).distances(8);
+    let model = round_trip(&costs, Form::Labels, Sense::Maximise);
+    let best = -(best_trip(&costs) as f64);
+    for (cutoff, incumbent) in [(best - 0.5, Some(best)), (best + 0.5, None)] {
+        let settings = Settings { cutoff: Some(cutoff), ..Settings::default() };
+        let (_, summary) = run(&model, &settings, u64::MAX);
+        assert_eq!((summary.status, summary.incumbent), (Status::Optimal, incumbent));
+        assert!(summary.bound == incumbent.or(Some(cutoff)) && summary.checked, "{summary:?}");
+    }
+}
+
+#[test]
 fn limits_stop_and_say_so() {
     let (model, best) = trip();
     let (_, free) = run(&model, &Settings::default(), u64::MAX);

@@ -32,6 +32,8 @@ pub struct Complaint {
 
 /// No more complaints than this are kept; the rest is counted.
 const KEPT: usize = 200;
+/// No more warnings than this are kept, so that they never hide errors; the rest is left out.
+const KEPT_WARNINGS: usize = 50;
 
 /// Gathers complaints about one text.
 pub(crate) struct Complaints<'a> {
@@ -39,13 +41,14 @@ pub(crate) struct Complaints<'a> {
     line_starts: Vec<usize>,
     list: Vec<Complaint>,
     errors: usize,
+    warnings: usize,
     dropped: usize,
 }
 
 impl<'a> Complaints<'a> {
     pub(crate) fn new(text: &'a str) -> Self {
         let line_starts = crate::text::lines(text).iter().map(|line| line.start).collect();
-        Self { text, line_starts, list: Vec::new(), errors: 0, dropped: 0 }
+        Self { text, line_starts, list: Vec::new(), errors: 0, warnings: 0, dropped: 0 }
     }
 
     pub(crate) fn error(
@@ -66,7 +69,10 @@ impl<'a> Complaints<'a> {
         message: impl Into<String>,
         mend: impl Into<String>,
     ) {
-        self.add((Severity::Warning, code), span, message.into(), mend.into());
+        self.warnings += 1;
+        if self.warnings <= KEPT_WARNINGS && !self.is_full() {
+            self.add((Severity::Warning, code), span, message.into(), mend.into());
+        }
     }
 
     /// Whether further complaints would only be counted. Callers that meet many of a kind ask
@@ -186,6 +192,18 @@ mod tests {
         let list = sink.finish();
         assert_eq!(list.len(), KEPT + 1);
         assert_eq!(list[KEPT].message, "6 further places could not be read");
+    }
+
+    #[test]
+    fn warnings_hide_no_errors() {
+        let mut sink = Complaints::new("text");
+        for _ in 0..2 * KEPT {
+            sink.warn(0..1, "w", "m", "");
+        }
+        sink.error(0..1, "x", "m", "");
+        let list = sink.finish();
+        assert_eq!(list.len(), KEPT_WARNINGS + 1);
+        assert_eq!(list.iter().filter(|c| c.severity == Severity::Error).count(), 1);
     }
 
     #[test]

@@ -70,8 +70,13 @@ pub(crate) fn style(lines: &[Line]) -> Style {
     Style { separator, decimal_comma }
 }
 
-/// Whether tabs stand among blanks between numbers, so that any white space separates.
+/// Whether tabs stand among blanks between numbers, so that any white space separates. Where
+/// every line has the same number of tabs they separate, whatever the cells hold.
 fn tabs_align_only(lines: &[Line]) -> bool {
+    let tabs = |line: &Line| line.text.matches('\t').count();
+    if lines.len() > 1 && lines.iter().all(|line| tabs(line) == tabs(&lines[0])) {
+        return false;
+    }
     let spaced = |cell: &str| {
         let mut words = cell.split_whitespace();
         words.clone().count() > 1 && words.all(|word| parse(word, false).is_ok())
@@ -226,7 +231,8 @@ mod tests {
         assert_eq!(style_of("Ash,3\nBirch,4"), (Separator::Comma, false));
         assert_eq!(style_of("0;1,5\n1,5;0"), (Separator::Semicolon, true));
         assert_eq!(style_of("0\t1.5\n1.5\t0"), (Separator::Tab, false));
-        assert_eq!(style_of("0 1\t2\n1 0\t3"), (Separator::Space, false));
+        assert_eq!(style_of("0 1\t2\n1\t0\t3"), (Separator::Space, false));
+        assert_eq!(style_of("a\t1 234\nb\t5"), (Separator::Tab, false));
         assert_eq!(style_of("0,5,7\n5,0,2"), (Separator::Comma, false));
     }
 

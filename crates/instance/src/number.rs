@@ -18,6 +18,8 @@ pub(crate) enum NotNumber {
     Point,
     /// It looks like a time of day or a duration.
     Clock,
+    /// Its thousands are marked by blanks or apostrophes.
+    Grouped,
     /// A number is followed by a word, as in `12 min`.
     Suffix,
     /// It has too many digits or too large a power of ten.
@@ -33,6 +35,7 @@ impl NotNumber {
             Self::Comma => "This table has decimal points: write a point, and no thousands marks.",
             Self::Point => "This table has decimal commas: write a comma, and no thousands marks.",
             Self::Clock => "Write the duration as one number, e.g. 90 for 1:30.",
+            Self::Grouped => "Leave out the marks between thousands.",
             Self::Suffix => "Write the number alone, without its unit.",
             Self::TooLong => "Write at most 36 digits and powers of ten up to 36.",
             Self::Other => "Write a number, or leave the cell blank where there is no drive.",
@@ -129,6 +132,8 @@ fn reason(body: &str, point: u8) -> NotNumber {
     let only = |marks: &str| body.chars().all(|c| c.is_ascii_digit() || marks.contains(c));
     if begins && only(":") {
         NotNumber::Clock
+    } else if begins && only(" '’\u{a0}\u{202f},.") && !only(",.") {
+        NotNumber::Grouped
     } else if begins && only(",.") && body.contains(',') && point == b'.' {
         NotNumber::Comma
     } else if begins && only(",.") && body.contains('.') && point == b',' {
@@ -190,6 +195,8 @@ mod tests {
         assert_eq!(parse("1.5", true), Err(NotNumber::Point));
         assert_eq!(parse("1:30", false), Err(NotNumber::Clock));
         assert_eq!(parse("12min", false), Err(NotNumber::Suffix));
+        assert_eq!(parse("1'234.5", false), Err(NotNumber::Grouped));
+        assert_eq!(parse("1\u{a0}234", false), Err(NotNumber::Grouped));
         for text in ["", ".", "-", "e5", "1e", "1/0", "1/", "--1", "Ash", "٣"] {
             assert_eq!(parse(text, false), Err(NotNumber::Other), "{text}");
         }

@@ -35,11 +35,13 @@ pub(crate) fn take<'a>(rows: &mut Vec<Row<'a>>, style: Style) -> Headings<'a> {
     if numbers_label(rows, style) {
         return split_off(rows, true, true, style);
     }
-    let header = rows.first().is_some_and(|row| {
-        let cells = &row.cells[usize::from(row.cells.len() > 1)..];
-        let words = cells.iter().filter(|cell| is_word(&cell.text, style.decimal_comma)).count();
-        words * 2 > cells.len() && (row.cells.len() > 1 || rows.len() == 1)
-    });
+    let header = counts_above_square(rows)
+        || rows.first().is_some_and(|row| {
+            let cells = &row.cells[usize::from(row.cells.len() > 1)..];
+            let words =
+                cells.iter().filter(|cell| is_word(&cell.text, style.decimal_comma)).count();
+            words * 2 > cells.len() && (row.cells.len() > 1 || rows.len() == 1)
+        });
     let body = &rows[usize::from(header)..];
     let words = body
         .iter()
@@ -55,6 +57,15 @@ fn counts_beside_square(rows: &[Row]) -> bool {
         && rows.iter().enumerate().all(|(number, row)| {
             row.cells.len() == rows.len() + 1 && row.cells[0].text == (number + 1).to_string()
         })
+}
+
+/// Whether the first row counts 1, 2, … above a square of at least three.
+fn counts_above_square(rows: &[Row]) -> bool {
+    let Some((first, rest)) = rows.split_first() else { return false };
+    let counts = |(place, cell): (usize, &Cell)| cell.text == (place + 1).to_string();
+    rest.len() > 2
+        && rows.iter().all(|row| row.cells.len() == rest.len())
+        && first.cells.iter().enumerate().all(counts)
 }
 
 /// Whether the first row and the first column hold the same numbers as labels.

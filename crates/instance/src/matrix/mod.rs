@@ -87,6 +87,13 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
         sink.error(row.end..row.end, "too-large", message, mend);
         return None;
     }
+    if let Some(first) = drive_list(&rows, style) {
+        let message = "this looks like a list of drives, a line each, and not like a table";
+        let mend = "Read it as blocks: put a line `c by i, j` above it and, before that, a line \
+            `V`, a line with all stops and a blank line.";
+        sink.error(first, "drive-list", message, mend);
+        return None;
+    }
     let headings = labels::take(&mut rows, style);
     drop_trailing(&mut rows, style);
     let values: Vec<Vec<Value>> = rows
@@ -112,6 +119,19 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
     let comma = if style.decimal_comma { ", with decimal commas" } else { "" };
     let how = format!("a matrix {labelled}, cells separated by {}{comma}", style.separator.name());
     Some(RoundTrip { title, unit, square, points: None, notes, how })
+}
+
+/// The place of the first row, if all rows are two words and a number.
+fn drive_list(rows: &[Row], style: Style) -> Option<std::ops::Range<usize>> {
+    let word = |cell: &Cell| is_word(&cell.text, style.decimal_comma);
+    let drive = |row: &Row| match row.cells.as_slice() {
+        [from, to, value] => {
+            word(from) && word(to) && parse(&value.text, style.decimal_comma).is_ok()
+        }
+        _ => false,
+    };
+    let first = rows.first()?.cells.first()?.span.start..rows.first()?.end;
+    rows.iter().all(drive).then_some(first)
 }
 
 /// Takes off an empty last cell of every row, as a separator at the end of lines leaves it.

@@ -25,6 +25,7 @@ pub(crate) fn square(
         let span = rows.first().map_or(0..0, |row| row.end..row.end);
         let mend = "Paste a table with a row and a column for each stop.";
         sink.error(span, "too-few-stops", "a round needs at least two stops", mend);
+        return None;
     }
     let (labels, order) = labels(shape, headings, sink)?;
     if sink.errors() > 0 {

@@ -72,8 +72,17 @@ fn numbers_may_be_labels() {
     ] {
         assert_eq!(square(text), ("10 20 30".to_owned(), CELLS.to_owned()), "{text}");
     }
-    let counted = "1 0 5 7.5\n2 4 0 3\n3 8 2 0";
-    assert_eq!(square(counted), ("1 2 3".to_owned(), CELLS.to_owned()));
+    for counted in ["1 0 5 7.5\n2 4 0 3\n3 8 2 0", "1 2 3\n0 5 7.5\n4 0 3\n8 2 0"] {
+        assert_eq!(square(counted), ("1 2 3".to_owned(), CELLS.to_owned()), "{counted}");
+    }
+}
+
+#[test]
+fn a_list_of_drives_is_told_from_a_table() {
+    let reading = read("A,B,5\nA,C,7\nB,C,9\n", None);
+    assert_eq!(places(&reading.complaints), [(1, 1, "drive-list")]);
+    let mended = read("V\nA B C\n\nc by i, j\nA,B,5\nA,C,7\nB,C,9\n", None);
+    assert_eq!((mended.reader, mended.complaints.len()), (Reader::Blocks, 0));
 }
 
 #[test]

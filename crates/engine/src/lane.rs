@@ -1,9 +1,10 @@
 //! One rival from its text to the end of its search.
 //!
 //! ```text
-//! Begin → Expanding → Root → Waiting ⇄ Running → Over
+//! Begin → Read → Expanding → Expanded → Root → Waiting ⇄ Running → Over
 //! ```
 //!
+//! Each step up to the root is at least a slice of its own, so that a request is heard between.
 //! A request that comes too early waits: "run" before the root is solved is remembered.
 
 use std::rc::Rc;
@@ -26,7 +27,9 @@ const PROGRESS_EVERY: u64 = 1 << 20;
 #[derive(Debug)]
 enum Stage {
     Begin,
+    Read,
     Expanding(Box<Loading>),
+    Expanded(Box<Loaded>),
     Root(Box<Solver>),
     Waiting(Box<Solver>),
     Running(Box<Solver>),
@@ -66,11 +69,16 @@ impl Lane {
     pub(crate) fn advance(&mut self, ticks: u64, readings: &mut Readings, outbox: &mut Outbox) {
         let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
         self.stage = match stage {
-            Stage::Begin => match Loading::begin(readings, &self.job) {
+            Stage::Begin => match self.job.instance.as_ref().map(|text| readings.read(text)) {
+                None | Some(Ok(_)) => Stage::Read,
+                Some(Err(error)) => self.fail(error, outbox),
+            },
+            Stage::Read => match Loading::begin(readings, &self.job) {
                 Ok(loading) => Stage::Expanding(Box::new(loading)),
                 Err(error) => self.fail(error, outbox),
             },
             Stage::Expanding(loading) => self.expand(loading, ticks, outbox),
+            Stage::Expanded(loaded) => self.begin_search(*loaded, outbox),
             Stage::Root(solver) => self.solve(solver, ticks, outbox, Stage::Root),
             Stage::Running(solver) => self.solve(solver, ticks, outbox, Stage::Running),
             resting => resting,
@@ -95,14 +103,18 @@ impl Lane {
             outbox.push(self.job.run, Reply::Progress(progress));
             return Stage::Expanding(loading);
         }
-        let Loaded { title, model, complaints, stops } = match loading.finish() {
-            Ok(loaded) => loaded,
-            Err(error) => return self.fail(error, outbox),
-        };
-        let report = map::rival_report(&model, &title, complaints);
-        outbox.push(self.job.run, Reply::Understood(Box::new(report)));
+        match loading.finish() {
+            Ok(loaded) => Stage::Expanded(Box::new(loaded)),
+            Err(error) => self.fail(error, outbox),
+        }
+    }
+
+    fn begin_search(&mut self, loaded: Loaded, outbox: &mut Outbox) -> Stage {
+        let Loaded { title, model, complaints, stops } = loaded;
         let settings = map::settings(&self.job.settings, self.job.seed);
         let search = Search::new(Rc::clone(&model), settings);
+        let report = map::rival_report(&model, search.separators(), &title, complaints);
+        outbox.push(self.job.run, Reply::Understood(Box::new(report)));
         let stops = Stops::new(&model, &stops);
         Stage::Root(Box::new(Solver { model, stops, search, told: 0 }))
     }
@@ -210,7 +222,7 @@ impl Lane {
                 solver.search.stop();
                 Stage::Running(solver)
             }
-            Stage::Begin | Stage::Expanding(_) => {
+            Stage::Begin | Stage::Read | Stage::Expanding(_) | Stage::Expanded(_) => {
                 self.fail(fault("rival", "stopped before its model was made"), outbox)
             }
             over @ Stage::Over(_) => over,

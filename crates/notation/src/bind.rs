@@ -42,7 +42,10 @@ pub fn bind(
     };
     let plan = Rc::clone(&checked.plan);
     for &id in &plan.order {
-        binder.symbol(id);
+        // nothing needs what is never used, and its shape may not be known
+        if plan.symbols[id].used {
+            binder.symbol(id);
+        }
     }
     if binder.errors.is_empty() {
         Ok(Bound { evaluator: binder.evaluator, notes: binder.notes })

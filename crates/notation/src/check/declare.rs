@@ -59,7 +59,10 @@ impl<'t> Checker<'t> {
             }
             let id = self.symbols.len();
             self.names.insert(name.text.clone(), Global::Symbol(id));
-            self.symbols.push(blank(&name.text, expression.span, datum));
+            let mut symbol = blank(&name.text, expression.span, datum);
+            // until it is declared, which it never is when it is defined by itself
+            symbol.roots = vec![Root::Unknown; name.indices.len()];
+            self.symbols.push(symbol);
             declared.push(Declared { name, span: expression.span, line, links: links.clone() });
         }
     }
@@ -286,7 +289,7 @@ pub(super) fn whole_set(steps: &[Step], indices: &[Node]) -> Option<SymbolId> {
     let same =
         |(p, n): (&Pattern, &Node)| matches!((p, n), (Pattern::Bind(a), Node::Slot(b)) if a == b);
     let all = pattern.len() == indices.len() && pattern.iter().zip(indices).all(same);
-    (all && none.is_empty() && indices.len() > 1).then_some(*set)
+    (all && none.is_empty() && !indices.is_empty()).then_some(*set)
 }
 
 fn turned(relation: Relation) -> Relation {

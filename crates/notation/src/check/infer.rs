@@ -15,6 +15,8 @@ enum Source {
     Tuples(SymbolId, usize, Vec<Expression>),
     /// All of a set.
     Whole(SymbolId),
+    /// Somewhere that has no name.
+    Unknown,
 }
 
 impl Checker<'_> {
@@ -35,20 +37,18 @@ impl Checker<'_> {
         for carrier in &work.carriers {
             self.collect(carrier, name, &mut sources);
         }
-        sources.dedup();
-        let unique = sources.iter().all(|s| *s == sources[0]);
-        let Some(source) = sources.into_iter().next().filter(|_| unique) else {
-            return self.report(message::no_set(name, span));
-        };
-        match source {
-            Source::Whole(set) => {
+        let only = if sources.len() == 1 { sources.pop() } else { None };
+        match only {
+            None | Some(Source::Unknown) => return self.report(message::no_set(name, span)),
+            Some(Source::Whole(set)) => {
                 self.symbols[set].used = true;
-                let slot = self.bind(name, Root::Set(set));
+                let root = self.set_root(set, 0);
+                let slot = self.bind(name, root);
                 let node = Node::Symbol(set, Vec::new(), span);
                 work.steps.push(Step::Over { pattern: vec![Pattern::Bind(slot)], set: node, span });
                 self.tell(name, &self.symbols[set].name.clone(), span);
             }
-            Source::Tuples(set, place, others) => {
+            Some(Source::Tuples(set, place, others)) => {
                 self.symbols[set].used = true;
                 let mut pattern = Vec::with_capacity(others.len());
                 let mut known = Vec::new();
@@ -83,15 +83,16 @@ impl Checker<'_> {
     fn collect(&self, expression: &Expression, index: &str, sources: &mut Vec<Source>) {
         if let Kind::Name(name) = &expression.kind
             && let Some(source) = self.source(name, index)
+            && !sources.contains(&source)
         {
-            sources.extend(source);
+            sources.push(source);
         }
         for child in super::usage::children(expression) {
             self.collect(child, index, sources);
         }
     }
 
-    fn source(&self, name: &Name, index: &str) -> Option<Option<Source>> {
+    fn source(&self, name: &Name, index: &str) -> Option<Source> {
         let (roots, tuples) = match self.names.get(&name.text)? {
             Global::Symbol(id) => (&self.symbols[*id].roots, self.symbols[*id].tuples),
             Global::Variable(v) => (&self.variables[*v].roots, self.variables[*v].tuples),
@@ -99,18 +100,16 @@ impl Checker<'_> {
         let written = self.letters_with(&name.indices, index, roots.len());
         let is_index = |e: &Expression| matches!(&e.kind, Kind::Name(n) if n.text == index && n.indices.is_empty());
         let place = written.iter().position(is_index)?;
-        let others_known =
-            written.iter().enumerate().all(|(i, e)| i == place || self.expression_known(e));
-        if let Some(set) = tuples
-            && others_known
-            && written.len() == roots.len()
-        {
-            return Some(Some(Source::Tuples(set, place, written)));
-        }
-        match roots.get(place) {
-            Some(Root::Set(set)) => Some(Some(Source::Whole(*set))),
-            _ => Some(None),
-        }
+        let known = |(i, e): (usize, &Expression)| i == place || self.expression_known(e);
+        let others_known = written.iter().enumerate().all(known);
+        Some(match (tuples, roots.get(place)) {
+            (Some(set), _) if roots.len() == 1 => Source::Whole(set),
+            (Some(set), _) if others_known && written.len() == roots.len() => {
+                Source::Tuples(set, place, written)
+            }
+            (_, Some(Root::Set(set))) => Source::Whole(*set),
+            _ => Source::Unknown,
+        })
     }
 
     /// Subscripts with letters split, `index` counting as a name.

@@ -149,7 +149,8 @@ impl Parser<'_> {
         let inner = text[1..text.len() - 1].trim();
         let apart = gap.has(Gap::WIDE) || gap.has(Gap::NEWLINE) || gap.has(Gap::QUAD);
         let quantified = self.tokens[self.at..open].iter().any(|t| t.kind == T::ForAll);
-        if !is_label(inner, apart || quantified) {
+        let sure = apart && quantified && is_plain(inner);
+        if !sure && !is_label(inner, apart || quantified) {
             return None;
         }
         self.end = open;
@@ -157,11 +158,17 @@ impl Parser<'_> {
     }
 }
 
+/// Letters, digits and the marks of names. Set apart behind a quantifier, where nothing can be
+/// multiplied, that makes a label: `(l,S)`.
+fn is_plain(inner: &str) -> bool {
+    let plain = |c: char| c.is_alphanumeric() || " -'.’/:,".contains(c);
+    inner.chars().all(plain) && inner.starts_with(char::is_alphanumeric)
+}
+
 /// Words, numbers, spaces and hyphens. A single letter counts only where it cannot be meant
 /// as a factor, a difference such as `n-1` never.
 fn is_label(inner: &str, alone: bool) -> bool {
-    let plain = |c: char| c.is_alphanumeric() || " -'.’/:".contains(c);
-    if !inner.chars().all(plain) || !inner.starts_with(char::is_alphanumeric) {
+    if !is_plain(inner) || inner.contains(',') {
         return false;
     }
     let number = inner.chars().all(|c| c.is_ascii_digit() || c == '.');

@@ -1,10 +1,11 @@
 //! What becomes of a node once its relaxation is solved, and the account of leaves.
 
-use model::ColumnId;
+use model::{ColumnId, Number};
 
 use crate::branching::Choice;
 use crate::event::{Event, NodeId, NodeState};
 use crate::search::{Hand, Job, PointInHand, Progress, Search};
+use crate::target::{float_below, signed};
 
 /// How far the value of a solution may be over the bound of the node whose point it is, for the
 /// node to be closed; relative to max(1, |value|). Such a leaf counts as unchecked unless
@@ -23,8 +24,9 @@ impl Search {
     /// The node in hand is solved and its candidates are tried: close it or branch.
     pub(crate) fn decide(&mut self) -> Option<Progress> {
         self.job = Job::None;
-        let hand = self.hand.take()?;
+        let mut hand = self.hand.take()?;
         let point = hand.point.as_ref()?;
+        hand.proved = self.relaxation.as_ref()?.prove(&point.duals);
         let closed = self.closed(&hand, point);
         let choice = if closed { None } else { self.choice(&point.x) };
         let state = match (closed, choice, hand.accepted) {
@@ -57,7 +59,7 @@ impl Search {
         }
         match choice {
             Some(choice) => self.branch(hand.node, inherited, &choice),
-            None => self.leaf(hand.node),
+            None => self.leaf(hand.node, hand.proved.as_ref()),
         }
         self.announce();
         None
@@ -81,7 +83,8 @@ impl Search {
     /// children: its own, or one of its ancestors' where that is better by rounding.
     fn record(&mut self, hand: &Hand, point: &PointInHand, state: NodeState) -> f64 {
         let Some(relaxation) = &self.relaxation else { return point.bound };
-        let proved = relaxation.proved(&point.duals);
+        let proved = hand.proved.clone().map(|bound| signed(&self.model, bound));
+        let proved = proved.as_ref().map_or(f64::NEG_INFINITY, float_below);
         self.ledger.ticks += point.x.len() as u64;
         let parent = self.tree.node(hand.node).parent();
         let above = parent.map(|parent| self.tree.node(parent).bound);
@@ -129,10 +132,13 @@ impl Search {
         }
     }
 
-    /// Counts a leaf that was closed by its value.
-    pub(crate) fn leaf(&mut self, node: NodeId) {
+    /// Counts a leaf that was closed by its value; `proved` is its own exact bound, in the
+    /// direction of the objective.
+    pub(crate) fn leaf(&mut self, node: NodeId, proved: Option<&Number>) {
         self.ledger.pruned = true;
-        let checked = self.target.proves(self.tree.node(node).proved);
+        let own = proved.map(|bound| signed(&self.model, bound.clone()));
+        let checked = self.target.proves_float(self.tree.node(node).proved)
+            || own.is_some_and(|bound| self.target.proves(&bound));
         self.count(checked);
     }
 
@@ -198,7 +204,7 @@ impl Search {
         self.ledger.ticks += 1;
         self.tree.node_mut(node).state = NodeState::Pruned;
         self.events.push(Event::Dropped { node, state: NodeState::Pruned });
-        self.leaf(node);
+        self.leaf(node, None);
     }
 
     /// At the end: nodes that could not be solved count as closed where their parent's bound
@@ -207,7 +213,7 @@ impl Search {
         let nodes = std::mem::take(&mut self.ledger.unsolved);
         for node in nodes {
             if self.target.closes(self.tree.node(node).bound) {
-                self.leaf(node);
+                self.leaf(node, None);
             } else {
                 self.ledger.unsolved.push(node);
             }

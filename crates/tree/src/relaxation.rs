@@ -16,7 +16,6 @@ use model::{
 use proof::ExactRows;
 
 use crate::event::{Branch, Side};
-use crate::target::{float_below, signed};
 
 /// Where a row of the relaxation comes from.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -190,12 +189,6 @@ impl Relaxation {
             *side = Number::try_from(branch.bound).ok();
         }
         proof::bound(&self.exact, &bounds, duals)
-    }
-
-    /// What [`Self::prove`] gives as an internal float on the safe side; −∞ for nothing.
-    pub(crate) fn proved(&self, duals: &[f64]) -> f64 {
-        let bound = self.prove(duals).map(|bound| signed(&self.model, bound));
-        bound.as_ref().map_or(f64::NEG_INFINITY, float_below)
     }
 
     /// Whether a ray proves that the node in hand has no point.

@@ -75,18 +75,19 @@ impl Search {
         let mut result = self.root_result(Status::Optimal, Some(&hand));
         let point = hand.point?;
         result.bound = Some(self.user(point.bound));
-        result.checked_bound = self.relaxation.as_ref().and_then(|r| r.prove(&point.duals));
+        result.checked_bound = hand.proved;
         result.checked = result.checked_bound.is_some();
         result.fractional = self.chooser.fractional(&point.x);
         let direction = direction(&self.model);
         result.reduced_costs = point.reduced_costs.iter().map(|d| direction * d + 0.0).collect();
         result.x = point.x;
+        let proved = result.checked_bound.clone();
         self.root = Some(result);
         self.job = crate::search::Job::None;
         self.plan = choice;
         match choice {
             None => {
-                self.leaf(NodeId::ROOT);
+                self.leaf(NodeId::ROOT, proved.as_ref());
                 self.end(Ending::Complete);
             }
             Some(_) if !self.settings.search => {

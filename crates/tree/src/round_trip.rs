@@ -137,3 +137,81 @@ fn is_unit_sum(model: &Model, row: RowId, columns: &std::ops::Range<u32>) -> boo
             .iter()
             .all(|&(column, a)| a == lower && columns.contains(&column.0))
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::tests::support::{Form, Random, random_model, round_trip, row, spec};
+    use std::rc::Rc;
+
+    #[test]
+    fn labels_flows_and_subtours_hold_round_trips() {
+        let costs = Random(2).costs(5, 30);
+        for form in [Form::Labels, Form::Flow, Form::Subtours] {
+            for sense in [Sense::Minimise, Sense::Maximise] {
+                let trip = RoundTrip::find(&round_trip(&costs, form, sense)).unwrap();
+                assert_eq!((trip.stops.len(), trip.arcs.len()), (5, 20));
+                for &(tail, head, column) in &trip.arcs {
+                    assert_eq!(trip.column[tail * 5 + head], Some(column));
+                    assert_eq!(trip.cost[tail * 5 + head], costs[tail][head] as f64);
+                }
+                assert_eq!(trip.cost[0], f64::INFINITY);
+            }
+        }
+        assert_eq!(RoundTrip::find(&random_model(1, 5, 1)), None);
+    }
+
+    /// Arcs among three stops; the row that enters the last is as given.
+    fn three(enter: Option<(i64, i64)>) -> Rc<Model> {
+        let mut builder = ModelBuilder::new("t", Sense::Minimise);
+        let stops: Vec<LabelId> = ["a", "b", "c"].iter().map(|name| builder.label(name)).collect();
+        builder.variable("x", true);
+        let mut arcs = Vec::new();
+        for (i, j) in [(0, 1), (0, 2), (1, 0), (1, 2), (2, 0), (2, 1)] {
+            arcs.push((
+                i,
+                j,
+                builder.column(&[stops[i], stops[j]], &spec((0, 1), 1, true)).unwrap(),
+            ));
+        }
+        builder.family("degree", FamilyState::In, false);
+        for k in 0..3 {
+            let out: Vec<_> = arcs.iter().filter(|a| a.0 == k).map(|a| (a.2, 3)).collect();
+            builder.row(&[], row(&out, Some(3), Some(3))).unwrap();
+            let Some((lower, upper)) = enter.filter(|_| k == 2).or((k < 2).then_some((1, 1)))
+            else {
+                continue;
+            };
+            let into: Vec<_> = arcs.iter().filter(|a| a.1 == k).map(|a| (a.2, 1)).collect();
+            builder.row(&[], row(&into, Some(lower), Some(upper))).unwrap();
+        }
+        Rc::new(builder.build())
+    }
+
+    #[test]
+    fn every_stop_must_be_left_and_entered_once() {
+        assert!(RoundTrip::find(&three(Some((1, 1)))).is_some());
+        assert_eq!(RoundTrip::find(&three(Some((0, 1)))), None);
+        assert_eq!(RoundTrip::find(&three(Some((2, 2)))), None);
+        assert_eq!(RoundTrip::find(&three(None)), None);
+    }
+
+    #[test]
+    fn the_separator_finds_what_hangs_apart() {
+        let costs = Random(2).costs(5, 30);
+        let model = round_trip(&costs, Form::Labels, Sense::Minimise);
+        let trip = RoundTrip::find(&model).unwrap();
+        let used = [(0, 1), (1, 0), (2, 3), (3, 4), (4, 2)];
+        let x: Vec<f64> = trip
+            .arcs
+            .iter()
+            .map(|&(i, j, _)| if used.contains(&(i, j)) { 1.0 } else { 0.0 })
+            .collect();
+        let mut separator = trip.separator(&model).unwrap();
+        separator.start(&x);
+        while separator.advance(100) == separate::Progress::Working {}
+        let found = separator.take();
+        let apart: BTreeSet<LabelId> = trip.stops[2..].iter().copied().collect();
+        assert!(found.iter().any(|f| trip.stops_of(&f.subset) == apart && f.violation == 1.0));
+    }
+}

@@ -6,7 +6,7 @@
 
 use std::rc::Rc;
 
-use model::Model;
+use model::{Model, Number};
 use separate::Separator;
 
 use crate::branching::{Choice, Chooser};
@@ -123,6 +123,8 @@ pub(crate) struct Hand {
     /// The internal value of its relaxation's point, where that is a solution.
     pub(crate) accepted: Option<f64>,
     pub(crate) point: Option<PointInHand>,
+    /// The bound that its multipliers prove, in the direction of the objective.
+    pub(crate) proved: Option<Number>,
 }
 
 /// The best solution.

@@ -178,3 +178,64 @@ impl Checker {
         self.iterations
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::tests::support::{row, spec};
+    use model::{ModelBuilder, Sense};
+
+    /// min y, 3y ≥ x, x whole: at x = 1 the best y is 1/3.
+    fn thirds() -> Rc<Model> {
+        let mut builder = ModelBuilder::new("thirds", Sense::Minimise);
+        let x = builder.column(&[], &spec((0, 4), 0, true)).unwrap();
+        let y = builder.column(&[], &spec((0, 4), 1, false)).unwrap();
+        builder.row(&[], row(&[(x, -1), (y, 3)], Some(0), None)).unwrap();
+        Rc::new(builder.build())
+    }
+
+    #[test]
+    fn simple_fractions_are_recognised() {
+        let checker = Checker::new(&thirds());
+        let Verdict::Solution(solution) = checker.check(&[], &[1.0 + 1e-8, 1.0 / 3.0]) else {
+            panic!("1/3 is enough")
+        };
+        assert_eq!(solution.value, Number::from(1) / Number::from(3));
+        assert!(solution.exact && solution.member);
+        assert_eq!(solution.x[0], 1.0);
+    }
+
+    #[test]
+    fn what_breaks_a_row_is_no_solution_until_it_is_completed() {
+        let model = thirds();
+        let mut checker = Checker::new(&model);
+        assert!(matches!(checker.check(&[], &[1.0, 0.2]), Verdict::Broken));
+        assert!(checker.begin(&[(ColumnId(0), 1.0)]));
+        let point = loop {
+            if let Some(point) = checker.advance(1) {
+                break point.unwrap();
+            }
+        };
+        assert!(matches!(checker.check(&[], &point), Verdict::Solution(s) if s.exact));
+        assert!(checker.begin(&[(ColumnId(0), 9.0)]));
+        let point = loop {
+            if let Some(point) = checker.advance(1) {
+                break point;
+            }
+        };
+        let outside = point.is_none_or(|x| matches!(checker.check(&[], &x), Verdict::Broken));
+        assert!(outside, "9 is outside the bounds of x");
+    }
+
+    #[test]
+    fn only_points_that_could_be_better_are_promising() {
+        let mut builder = ModelBuilder::new("two", Sense::Maximise);
+        let x = builder.column(&[], &spec((0, 4), 3, true)).unwrap();
+        let y = builder.column(&[], &spec((0, 4), 1, true)).unwrap();
+        builder.row(&[], row(&[(x, 1), (y, 1)], None, Some(4))).unwrap();
+        let mut checker = Checker::new(&Rc::new(builder.build()));
+        assert!(checker.promising(&[2.0, 2.0], |value| value > 7.0));
+        assert!(!checker.promising(&[2.0, 2.0], |value| value > 8.0));
+        assert!(!checker.promising(&[3.0, 2.0], |_| true));
+    }
+}

@@ -68,13 +68,17 @@ impl Target {
     }
 
     /// Whether a bound that was proved leaves no better value: exact.
-    pub(crate) fn proves(&self, proved: f64) -> bool {
-        let Ok(proved) = Number::try_from(proved) else { return false };
+    pub(crate) fn proves(&self, proved: &Number) -> bool {
         match (&self.improving, &self.best) {
-            (Some(improving), _) => proved > *improving,
-            (None, Some(best)) => proved >= *best,
+            (Some(improving), _) => proved > improving,
+            (None, Some(best)) => proved >= best,
             (None, None) => false,
         }
+    }
+
+    /// The same for a bound that is kept as a float on the safe side.
+    pub(crate) fn proves_float(&self, proved: f64) -> bool {
+        Number::try_from(proved).is_ok_and(|proved| self.proves(&proved))
     }
 }
 
@@ -139,10 +143,10 @@ mod tests {
     #[test]
     fn a_lattice_closes_just_over_the_last_improving_value() {
         let mut target = target(&[Number::from(2), Number::from(4)], true, Number::from(1));
-        assert!(!target.closes(1e300) && !target.proves(1e300));
+        assert!(!target.closes(1e300) && !target.proves_float(1e300));
         target.improve(Number::from(9));
         assert!(!target.closes(7.0) && target.closes(7.1) && target.closes(9.0));
-        assert!(!target.proves(7.0) && target.proves(7.0f64.next_up()));
+        assert!(!target.proves_float(7.0) && target.proves_float(7.0f64.next_up()));
         target.improve(Number::from(11));
         assert_eq!(target.best(), Some(9.0));
         target.improve(Number::from(6));
@@ -157,7 +161,7 @@ mod tests {
         let mut target = target(&[Number::from(2)], false, Number::ZERO);
         target.improve(Number::from(9));
         assert!(!target.closes(8.999) && target.closes(9.0) && target.closes(9.0 - 1e-9));
-        assert!(!target.proves(9.0f64.next_down()) && target.proves(9.0));
+        assert!(!target.proves_float(9.0f64.next_down()) && target.proves_float(9.0));
     }
 
     #[test]

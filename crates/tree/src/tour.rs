@@ -239,3 +239,77 @@ impl TourSearch {
         (along, back)
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::tests::support::{Form, Random, best_trip, round_trip};
+    use model::{Model, Sense};
+
+    fn search(costs: &[Vec<i64>], slice: u64) -> (TourSearch, Rc<Model>) {
+        let model = round_trip(costs, Form::Subtours, Sense::Minimise);
+        let trip = Rc::new(RoundTrip::find(&model).unwrap());
+        let mut search = TourSearch::new(&trip, 0);
+        while !search.advance(slice) {}
+        (search, model)
+    }
+
+    #[test]
+    fn small_trips_are_near_the_best() {
+        let mut met = 0;
+        for seed in 0..20 {
+            let costs = Random(seed).costs(8, 50);
+            let (search, _) = search(&costs, u64::MAX);
+            let (length, tour) = search.best.clone().unwrap();
+            let best = best_trip(&costs) as f64;
+            let mut sorted = tour.clone();
+            sorted.sort_unstable();
+            assert_eq!(sorted, (0..8).collect::<Vec<_>>());
+            assert!((search.measure(&tour) - length).abs() < 1e-9 && length >= best);
+            assert!(length <= 1.25 * best, "{length} against {best}");
+            met += u32::from(length == best);
+        }
+        assert!(met >= 15, "{met}");
+    }
+
+    #[test]
+    fn slices_do_not_change_the_trip() {
+        let costs = Random(9).distances(12);
+        let whole = search(&costs, u64::MAX).0;
+        let sliced = search(&costs, 1).0;
+        assert_eq!((whole.columns(), whole.ticks()), (sliced.columns(), sliced.ticks()));
+    }
+
+    #[test]
+    fn turning_a_piece_round_counts_its_inside() {
+        // 0 → 1 → 2 → 3 → 0 costs 4 that way and 40 the other: no piece may be turned.
+        let n = 4;
+        let way = |i: usize, j: usize| if (i + 1) % n == j { 1 } else { 10 };
+        let costs: Vec<Vec<i64>> =
+            (0..n).map(|i| (0..n).map(|j| if i == j { 0 } else { way(i, j) }).collect()).collect();
+        let (search, _) = search(&costs, u64::MAX);
+        assert_eq!(search.best.as_ref().unwrap().0, 4.0);
+    }
+
+    #[test]
+    fn arcs_that_do_not_exist_are_not_used() {
+        let costs = Random(4).costs(6, 9);
+        let model = round_trip(&costs, Form::Subtours, Sense::Minimise);
+        let mut trip = RoundTrip::find(&model).unwrap();
+        for (place, column) in trip.column.iter_mut().enumerate() {
+            let (tail, head) = (place / 6, place % 6);
+            if (tail + 1) % 6 != head {
+                *column = None;
+                trip.cost[place] = f64::INFINITY;
+            }
+        }
+        let mut search = TourSearch::new(&Rc::new(trip.clone()), 0);
+        assert!(search.advance(u64::MAX));
+        assert_eq!(search.columns().unwrap().len(), 6);
+        trip.column[5 * 6] = None;
+        trip.cost[5 * 6] = f64::INFINITY;
+        let mut search = TourSearch::new(&Rc::new(trip), 0);
+        assert!(search.advance(u64::MAX));
+        assert_eq!(search.columns(), None);
+    }
+}

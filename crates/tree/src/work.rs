@@ -113,6 +113,7 @@ impl Search {
             rounds: 0,
             accepted: None,
             point: None,
+            proved: None,
         });
         self.solve()
     }

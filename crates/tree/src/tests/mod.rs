@@ -5,5 +5,5 @@ mod enumeration;
 mod inspection;
 mod jeroslow;
 mod slices;
-mod support;
+pub(crate) mod support;
 mod trips;

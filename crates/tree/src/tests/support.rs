@@ -12,7 +12,7 @@ use crate::relaxation::{direction, problem};
 use crate::{Branching, Event, Progress, Search, Selection, Settings, Summary};
 
 /// The four pairs of rules.
-pub(super) fn rules() -> Vec<Settings> {
+pub(crate) fn rules() -> Vec<Settings> {
     let mut all = Vec::new();
     for branching in [Branching::MostFractional, Branching::Pseudocost] {
         for selection in [Selection::BestBound, Selection::DepthFirst] {
@@ -23,14 +23,14 @@ pub(super) fn rules() -> Vec<Settings> {
 }
 
 /// Runs to the end in slices of `ticks`.
-pub(super) fn run(model: &Rc<Model>, settings: &Settings, ticks: u64) -> (Vec<Event>, Summary) {
+pub(crate) fn run(model: &Rc<Model>, settings: &Settings, ticks: u64) -> (Vec<Event>, Summary) {
     let mut search = Search::new(Rc::clone(model), settings.clone());
     finish(&mut search, ticks);
     (search.take_events(), search.summary())
 }
 
 /// Runs a search on to its end.
-pub(super) fn finish(search: &mut Search, ticks: u64) {
+pub(crate) fn finish(search: &mut Search, ticks: u64) {
     for _ in 0..100_000_000_u64 {
         match search.advance(ticks) {
             Progress::Working => {}
@@ -42,10 +42,10 @@ pub(super) fn finish(search: &mut Search, ticks: u64) {
 }
 
 /// Numbers from a seed: SplitMix64 (Steele, Lea, Flood 2014).
-pub(super) struct Random(pub(super) u64);
+pub(crate) struct Random(pub(crate) u64);
 
 impl Random {
-    pub(super) fn below(&mut self, limit: i64) -> i64 {
+    pub(crate) fn below(&mut self, limit: i64) -> i64 {
         self.0 = self.0.wrapping_add(0x9e37_79b9_7f4a_7c15);
         let mut z = self.0;
         z = (z ^ (z >> 30)).wrapping_mul(0xbf58_476d_1ce4_e5b9);
@@ -53,14 +53,14 @@ impl Random {
         i64::try_from((z ^ (z >> 31)) % limit.unsigned_abs()).unwrap()
     }
 
-    pub(super) fn costs(&mut self, stops: usize, most: i64) -> Vec<Vec<i64>> {
+    pub(crate) fn costs(&mut self, stops: usize, most: i64) -> Vec<Vec<i64>> {
         (0..stops)
             .map(|i| (0..stops).map(|j| if i == j { 0 } else { 1 + self.below(most) }).collect())
             .collect()
     }
 
     /// Distances between points of a grid, a little different by direction: hard for labels.
-    pub(super) fn distances(&mut self, stops: usize) -> Vec<Vec<i64>> {
+    pub(crate) fn distances(&mut self, stops: usize) -> Vec<Vec<i64>> {
         let points: Vec<(i64, i64)> =
             (0..stops).map(|_| (self.below(60), self.below(60))).collect();
         let mut far = |i: usize, j: usize| {
@@ -71,12 +71,12 @@ impl Random {
     }
 }
 
-pub(super) fn whole(value: i64) -> Number {
+pub(crate) fn whole(value: i64) -> Number {
     Number::from(value)
 }
 
 /// A column with whole bounds.
-pub(super) fn spec(bounds: (i64, i64), cost: i64, integer: bool) -> ColumnSpec {
+pub(crate) fn spec(bounds: (i64, i64), cost: i64, integer: bool) -> ColumnSpec {
     ColumnSpec {
         lower: Some(whole(bounds.0)),
         upper: Some(whole(bounds.1)),
@@ -86,7 +86,7 @@ pub(super) fn spec(bounds: (i64, i64), cost: i64, integer: bool) -> ColumnSpec {
 }
 
 /// A row of whole numbers.
-pub(super) fn row(entries: &[(ColumnId, i64)], lower: Option<i64>, upper: Option<i64>) -> Row {
+pub(crate) fn row(entries: &[(ColumnId, i64)], lower: Option<i64>, upper: Option<i64>) -> Row {
     Row {
         entries: entries.iter().map(|&(c, a)| (c, whole(a))).collect(),
         lower: lower.map(whole),
@@ -95,7 +95,7 @@ pub(super) fn row(entries: &[(ColumnId, i64)], lower: Option<i64>, upper: Option
 }
 
 /// The best value by trying every assignment of the whole columns, each with an LP for the rest.
-pub(super) fn enumerated(model: &Model) -> Option<f64> {
+pub(crate) fn enumerated(model: &Model) -> Option<f64> {
     let columns: Vec<ColumnId> = (0..model.columns().len())
         .map(ColumnId::from_index)
         .filter(|c| model.columns()[c.index()].integer)
@@ -126,7 +126,7 @@ pub(super) fn enumerated(model: &Model) -> Option<f64> {
 }
 
 /// A random model of binaries and, if wanted, continuous columns.
-pub(super) fn random_model(seed: u64, binaries: usize, continuous: usize) -> Rc<Model> {
+pub(crate) fn random_model(seed: u64, binaries: usize, continuous: usize) -> Rc<Model> {
     let mut random = Random(seed);
     let sense = if random.below(2) == 0 { Sense::Minimise } else { Sense::Maximise };
     let mut builder = ModelBuilder::new("random", sense);
@@ -154,7 +154,7 @@ pub(super) fn random_model(seed: u64, binaries: usize, continuous: usize) -> Rc<
 
 /// Which rows rule out subtours.
 #[derive(Clone, Copy, PartialEq, Eq)]
-pub(super) enum Form {
+pub(crate) enum Form {
     /// Position labels (Miller, Tucker, Zemlin 1960).
     Labels,
     /// One-commodity flow (Gavish, Graves 1978).
@@ -164,7 +164,7 @@ pub(super) enum Form {
 }
 
 /// A round trip over all stops; maximising turns the costs round.
-pub(super) fn round_trip(costs: &[Vec<i64>], form: Form, sense: Sense) -> Rc<Model> {
+pub(crate) fn round_trip(costs: &[Vec<i64>], form: Form, sense: Sense) -> Rc<Model> {
     let n = costs.len();
     let mut builder = ModelBuilder::new("round trip", sense);
     let stops: Vec<LabelId> = (0..n).map(|i| builder.label(&format!("s{i}"))).collect();
@@ -253,7 +253,7 @@ fn subtours(builder: &mut ModelBuilder, stops: &[LabelId], arcs: &[(usize, usize
 }
 
 /// The cost of the best round trip, by trying every order of the stops after the first.
-pub(super) fn best_trip(costs: &[Vec<i64>]) -> i64 {
+pub(crate) fn best_trip(costs: &[Vec<i64>]) -> i64 {
     fn extend(costs: &[Vec<i64>], here: usize, left: u32, sofar: i64, best: &mut i64) {
         if left == 0 {
             *best = (*best).min(sofar + costs[here][0]);

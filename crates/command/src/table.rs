@@ -141,7 +141,7 @@ fn notes(one: &RivalResult) -> Vec<String> {
     let mut notes = one.left_out.clone();
     let stopped = one.search.as_ref().and_then(|search| search.stopped.clone());
     let stopped = stopped.or(one.root.as_ref().and_then(|root| root.stopped.clone()));
-    notes.extend(stopped.map(|why| format!("stopped by {why}")));
+    notes.extend(stopped.map(|why| format!("stopped: {why}")));
     notes.extend(one.error.as_ref().map(|error| error.message.clone()));
     if let Some(root) = &one.root
         && let (Some(exact), true) = (&root.checked_bound, root.checked)

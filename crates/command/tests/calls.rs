@@ -173,6 +173,49 @@ fn the_clock_stops_a_long_run_and_steers_nothing() {
     assert!(stopped.is_some_and(|why| why.contains("time limit of 0.2 s")), "{}", lines[0]);
 }
 
+/// A rival of its own over the stops `V`.
+fn own(text: &str) -> String {
+    format!("[[rival]]\ntext = '''\ndata\n  V  stops\n{text}\n'''\n")
+}
+
+#[test]
+fn infeasible_and_unbounded_are_results_with_status_zero() {
+    let none = own(
+        "min Σ_{i ∈ V} y_i\ns.t.\n y_i ≥ 2 ∀ i ∈ V (low)\n Σ_{i ∈ V} y_i ≤ 9 (cap)\n y_i ≥ 0 ∀ i ∈ V",
+    );
+    let half = own("min Σ_{i ∈ V} y_i\ns.t.\n 2 y_i = 1 ∀ i ∈ V (half)\n y_i ∈ ℤ_+ ∀ i ∈ V");
+    let free = own("max Σ_{i ∈ V} y_i\ns.t.\n y_i ≥ 2 ∀ i ∈ V (low)\n y_i ∈ ℤ_+ ∀ i ∈ V");
+    let output = hullward(&["run", "-", "--json"], &scenario(&format!("{none}{half}{free}")));
+    assert_eq!(status(&output), 0, "{}", err(&output));
+    let lines = lines(&output);
+    let found: Vec<&Value> = lines.iter().map(|object| &object["status"]).collect();
+    assert_eq!(found, ["infeasible", "infeasible", "unbounded"]);
+    // The ray adds the rows y_i ≥ 2 of the five stops and −(Σ y_i ≤ 9): 10 ≤ 9.
+    let ray = lines[0]["root"]["ray"].as_array().expect("a list");
+    let scale = ray[5][1].as_f64().expect("a number");
+    let weights = ray.iter().map(|row| row[1].as_f64().expect("a number") / scale);
+    assert_eq!(weights.collect::<Vec<_>>(), [-1.0, -1.0, -1.0, -1.0, -1.0, 1.0]);
+    assert_eq!(
+        (&ray[5][0], &lines[0]["root"]["checked"]),
+        (&Value::from("cap"), &Value::from(true))
+    );
+    assert_eq!(lines[1]["root"]["bound"], 2.5);
+}
+
+#[test]
+fn a_known_value_closes_what_is_no_better() {
+    let output = hullward(&["run", "-", "--json"], &two_rivals("[run]\nbest_known = 14\n"));
+    assert_eq!(status(&output), 0, "{}", err(&output));
+    for object in lines(&output) {
+        let search = &object["search"];
+        assert_eq!(
+            (&search["status"], &search["incumbent"]),
+            (&Value::from("optimal"), &Value::Null)
+        );
+        assert_eq!(search["bound"], 14.0);
+    }
+}
+
 #[test]
 fn without_search_only_the_root_is_given() {
     let output = hullward(&["run", "-", "--json"], &two_rivals("[run]\nsearch = false\n"));

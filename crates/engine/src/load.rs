@@ -88,7 +88,9 @@ impl Loading {
                 return Err(unknown("rival", "constraint family", name, &known));
             }
         }
-        let title = if title.is_empty() { model.title().to_owned() } else { title };
+        let titles = [title.as_str(), model.title(), "untitled"];
+        let title =
+            titles.into_iter().find(|title| !title.is_empty()).unwrap_or_default().to_owned();
         Ok(Loaded {
             title,
             complaints: warnings.iter().map(|found| of_diagnostic(&text, found)).collect(),

@@ -22,7 +22,7 @@ pub(crate) struct Selection {
 }
 
 /// How far beyond the best value the axis goes at most, as a share of the way to it.
-const BEYOND: f64 = 0.3;
+const BEYOND: f64 = 0.15;
 
 /// All lanes.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -295,7 +295,7 @@ mod tests {
         let grown = LaneAction::Grown(Tally { extent, ..Tally::default() });
         let board = reduce(board, BoardAction::Lane(LaneId(1), grown));
         assert_eq!(board.domain(None), Some((10.0, 90.0)));
-        assert_eq!(board.domain(Some(20.0)), Some((10.0, 23.0)));
+        assert_eq!(board.domain(Some(20.0)), Some((10.0, 21.5)));
         assert_eq!(Board::default().domain(None), None);
     }
 

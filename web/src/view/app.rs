@@ -51,17 +51,18 @@ fn Header(props: &HeaderProps) -> Html {
         gloo_utils::document().set_title(&format!("{title} – Hullward"));
     });
     let oninput = Callback::from(move |event: InputEvent| {
-        let input: web_sys::HtmlInputElement = event.target_unchecked_into();
+        let area: web_sys::HtmlTextAreaElement = event.target_unchecked_into();
         if let Some(hands) = &hands {
-            hands.document.dispatch(DocumentAction::Title(input.value()));
+            let title = area.value().replace(['\r', '\n'], " ");
+            hands.document.dispatch(DocumentAction::Title(title));
         }
     });
     html! {
         <header class="head">
             <h1>
-                <input
-                    class="title" aria-label="Scenario title" data-testid="title" type="text"
-                    maxlength="120" value={props.title.clone()} {oninput}
+                <textarea
+                    class="title" aria-label="Scenario title" data-testid="title" rows="1"
+                    maxlength="120" spellcheck="false" value={props.title.clone()} {oninput}
                 />
             </h1>
             <p class="soft">{ "Hullward · nothing leaves this tab" }</p>

@@ -13,6 +13,9 @@ const ROOM: f64 = 14.0;
 /// Size of its texts in pixels.
 const SIZE: f64 = 12.0;
 
+/// How much wider bold text is.
+const BOLD: f64 = 1.12;
+
 /// The x of a value on a drawing of some width.
 pub(crate) fn across(axis: &Axis, width: f64, value: f64) -> f64 {
     ROOM + axis.place(value, width - 2.0 * ROOM)
@@ -44,7 +47,7 @@ pub(crate) fn AxisView(props: &AxisProps) -> Html {
             <line class="rule" x1={px(ROOM)} y1="43.5" x2={end} y2="43.5" />
             for tick in axis.ticks() {
                 <line class="rule" x1={px(across(axis, width, tick))} y1="38" x2={px(across(axis, width, tick))} y2="44" />
-                { tick_label(axis, width, tick) }
+                { tick_label(props, tick) }
             }
             if let Some(best) = &props.best { { best_mark(axis, width, best) } }
         </svg>
@@ -59,17 +62,23 @@ fn label(props: &AxisProps) -> String {
     format!("Shared axis of bounds from {low} to {high}{best}")
 }
 
-fn tick_label(axis: &Axis, width: f64, tick: f64) -> Html {
+/// The text of a tick, unless the line of the best value would run through it.
+fn tick_label(props: &AxisProps, tick: f64) -> Html {
+    let (axis, width) = (&props.axis, props.width);
     let text = axis.label(tick);
     let half = text_width(&text, SIZE) / 2.0;
     let x = within(across(axis, width, tick) - half, 2.0 * half, width);
+    let best = props.best.as_ref().map(|best| across(axis, width, best.value));
+    if best.is_some_and(|best| x - 4.0 < best && best < x + 2.0 * half + 4.0) {
+        return Html::default();
+    }
     html! { <text class="tick" x={px(x)} y="34">{ text }</text> }
 }
 
 fn best_mark(axis: &Axis, width: f64, best: &Best) -> Html {
     let x = across(axis, width, best.value);
     let text = format!("best known {} ({})", short(best.value), best.whose);
-    let length = text_width(&text, SIZE);
+    let length = text_width(&text, SIZE) * BOLD;
     let left = within(x - length / 2.0, length, width);
     html! {
         <>

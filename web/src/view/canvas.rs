@@ -1,7 +1,7 @@
 //! A lane's tree on its canvas: drawn at most once a frame and never for more than a small part
 //! of the time; a click or the arrow keys select a node.
 
-use std::cell::RefCell;
+use std::cell::{Cell, RefCell};
 use std::rc::Rc;
 
 use gloo_events::EventListener;
@@ -15,8 +15,21 @@ use crate::browser::run::TreeCell;
 use crate::state::tree::Tree;
 use crate::view::paint::{Scene, paint};
 
-/// After a drawing that took `t`, the next waits for this many times `t`.
+/// After a drawing that took `t`, the next of the same tree waits for this many times `t`.
 const REST: f64 = 5.0;
+
+/// Nodes that lengthen the wait by a millisecond, and the longest such wait: putting a drawing on
+/// the screen costs time that the script does not see.
+const NODES: f64 = 16.0;
+const LONGEST: f64 = 250.0;
+
+/// Between drawings of different trees, in milliseconds, so that no frame holds two large ones.
+const APART: f64 = 20.0;
+
+thread_local! {
+    /// When any tree was last drawn.
+    static LAST: Cell<f64> = const { Cell::new(0.0) };
+}
 
 /// How far from a node a click still means it, in pixels.
 const REACH: f64 = 24.0;
@@ -34,7 +47,7 @@ pub(crate) struct CanvasProps {
     pub(crate) open: Callback<()>,
 }
 
-/// What is to be drawn, and how long the last drawing took.
+/// What is to be drawn, and what the last drawing costs in rest.
 #[derive(Default)]
 struct Painter {
     due: Option<(HtmlCanvasElement, TreeCell, Scene)>,
@@ -53,7 +66,7 @@ impl Painter {
             if painter.timer.is_some() {
                 return;
             }
-            painter.ended + REST * painter.cost - now()
+            painter.wait(now())
         };
         if wait <= 1.0 {
             cell.borrow_mut().paint();
@@ -62,19 +75,28 @@ impl Painter {
         let later = Rc::downgrade(cell);
         cell.borrow_mut().timer = Some(Timeout::new(wait as u32, move || {
             if let Some(cell) = later.upgrade() {
-                let mut painter = cell.borrow_mut();
-                painter.timer = None;
-                painter.paint();
+                cell.borrow_mut().timer = None;
+                Self::draw(&cell);
             }
         }));
+    }
+
+    /// How long a drawing has to wait, in milliseconds.
+    fn wait(&self, now: f64) -> f64 {
+        let own = self.ended + self.cost - now;
+        let other = LAST.get() + APART - now;
+        if own > other { own } else { other }
     }
 
     fn paint(&mut self) {
         let Some((canvas, tree, scene)) = &self.due else { return };
         let begun = now();
-        paint(canvas, &tree.borrow(), scene);
+        let tree = tree.borrow();
+        paint(canvas, &tree, scene);
         self.ended = now();
-        self.cost = self.ended - begun;
+        let nodes = tree.nodes().len() as f64 / NODES;
+        self.cost = REST * (self.ended - begun) + if nodes < LONGEST { nodes } else { LONGEST };
+        LAST.set(self.ended);
     }
 }
 

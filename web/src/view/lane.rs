@@ -53,9 +53,9 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
             data-lane={props.letter.clone()} aria-label={format!("{}, {}", props.letter, props.title)}
         >
             <div class="lane-side">
-                <h3><span class="letter">{ props.letter.clone() }</span><span>{ props.title.clone() }</span></h3>
+                { name(props, hands.as_ref()) }
                 if let Some(rival) = &props.lane.rival {
-                    <p class="small soft" data-testid="size">{ size(rival) }</p>
+                    <p class="small soft" data-testid="size" title={of(rival.nonzeros, "coefficient")}>{ size(rival) }</p>
                     <Families slot={props.slot.clone()} rival={rival.clone()} />
                 }
                 { figures(props) }
@@ -103,6 +103,24 @@ fn use_loading(props: &LaneProps, hands: Option<Hands>) {
     });
 }
 
+/// The letter, the title, and the button that takes the rival away.
+fn name(props: &LaneProps, hands: Option<&Hands>) -> Html {
+    let id = props.slot.id;
+    let document = hands.map(|hands| hands.document.clone());
+    let onclick = Callback::from(move |_: MouseEvent| {
+        if let Some(document) = &document {
+            document.dispatch(DocumentAction::Remove(id));
+        }
+    });
+    let remove = format!("Remove {}, {}", props.letter, props.title);
+    html! {
+        <div class="lane-name">
+            <h3><span class="letter">{ props.letter.clone() }</span><span>{ props.title.clone() }</span></h3>
+            <button type="button" class="link soft" data-testid="remove" aria-label={remove} {onclick}>{ "Remove" }</button>
+        </div>
+    }
+}
+
 fn size(rival: &RivalReport) -> String {
     let whole = if rival.integer_columns == rival.columns {
         "all whole".to_owned()
@@ -110,10 +128,9 @@ fn size(rival: &RivalReport) -> String {
         format!("{} whole", count(u64::from(rival.integer_columns)))
     };
     format!(
-        "{} · {} ({whole}) · {}",
+        "{} · {} · {whole}",
         of(u64::from(rival.rows), "row"),
-        of(u64::from(rival.columns), "column"),
-        of(rival.nonzeros, "coefficient")
+        of(u64::from(rival.columns), "column")
     )
 }
 
@@ -185,16 +202,12 @@ fn buttons(props: &LaneProps, hands: &Hands) -> Html {
         Phase::Done | Phase::Failed => |hands, at| hands.session.search_anew(at.lane),
         _ => |hands, at| hands.session.search(at.lane, None),
     };
-    let remove = format!("Remove {}, {}", props.letter, props.title);
     html! {
         <div class="acts" role="group" aria-label={format!("Run of {}", props.letter)}>
             { button("Run", phase.can_go_on() || (!over && matches!(phase, Phase::Done | Phase::Failed)), act(run)) }
             { button("Pause", phase == Phase::Running, act(|hands, at| hands.session.pause(at.lane))) }
             { button("Step", phase.can_go_on(), act(|hands, at| hands.session.search(at.lane, Some(1)))) }
             { button("Stop", phase.can_stop(), act(|hands, at| hands.session.stop(at.lane))) }
-            <button type="button" class="aside" data-testid="remove" aria-label={remove}
-                onclick={act(|hands, at| hands.document.dispatch(DocumentAction::Remove(at.lane)))}
-            >{ "Remove" }</button>
         </div>
     }
 }

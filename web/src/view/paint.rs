@@ -13,10 +13,14 @@ use web_sys::{CanvasRenderingContext2d, HtmlCanvasElement};
 use crate::state::tree::Tree;
 use crate::view::axis::across;
 
-/// Nodes up to which edges are curves, edges are drawn, and marks are drawn.
-const CURVED: usize = 1_500;
+/// Nodes up to which edges are curves, all edges are drawn, edges of inner nodes are drawn, and
+/// marks are drawn.
+const CURVED: usize = 600;
+const LEAFED: usize = 1_200;
 const EDGED: usize = 6_000;
 const DENSE: usize = 20_000;
+/// Edges drawn in one stroke: a longer path costs more than its parts.
+const STROKE: usize = 64;
 /// Shades of a dense drawing.
 const LEVELS: u32 = 4;
 /// Side of a cell of a dense drawing, in pixels.
@@ -118,7 +122,7 @@ impl Pen<'_> {
             self.density();
         } else {
             if count <= EDGED {
-                self.edges(count <= CURVED);
+                self.edges(count);
             }
             self.marks();
         }
@@ -161,15 +165,19 @@ impl Pen<'_> {
         let _ = self.context.set_line_dash(&lengths);
     }
 
-    fn edges(&self, curved: bool) {
+    fn edges(&self, count: usize) {
         self.context.set_stroke_style_str(&self.soft);
         self.context.set_line_width(0.7);
-        self.context.set_global_alpha(0.5);
-        self.context.begin_path();
-        for place in 1..self.tree.nodes().len() {
-            self.edge(place, curved);
+        self.context.set_global_alpha(if count <= CURVED { 0.55 } else { 0.35 });
+        let shown = |&place: &usize| count <= LEAFED || self.tree.first_child(place).is_some();
+        let places: Vec<usize> = (1..count).filter(shown).collect();
+        for stroke in places.chunks(STROKE) {
+            self.context.begin_path();
+            for &place in stroke {
+                self.edge(place, count <= CURVED);
+            }
+            self.context.stroke();
         }
-        self.context.stroke();
         self.context.set_global_alpha(1.0);
     }
 

@@ -191,10 +191,12 @@ fn AddRival(props: &AddProps) -> Html {
             <label class="field">
                 { "Another rival" }
                 <select ref={select} data-testid="catalogue">
-                    for entry in props.catalogue.iter() {
-                        <option value={entry.id.clone()} title={entry.citation.clone()}>
+                    for (place, entry) in props.catalogue.iter().enumerate() {
+                        <option
+                            value={entry.id.clone()} title={entry.citation.clone()}
+                            selected={place == 0}
+                        >
                             { entry.title.clone() }
-                            if entry.relaxation { { " (relaxation)" } }
                         </option>
                     }
                 </select>

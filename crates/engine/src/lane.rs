@@ -190,6 +190,11 @@ impl Lane {
     fn run(&mut self, nodes: Option<u32>) {
         let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
         self.stage = match stage {
+            Stage::Waiting(mut solver) if solver.search.root().is_none() => {
+                self.asked = Some(nodes);
+                solver.search.run(None);
+                Stage::Root(solver)
+            }
             Stage::Waiting(mut solver) | Stage::Running(mut solver) => {
                 solver.search.run(nodes);
                 Stage::Running(solver)
@@ -205,7 +210,7 @@ impl Lane {
     fn pause(&mut self, outbox: &mut Outbox) {
         self.asked = None;
         match &mut self.stage {
-            Stage::Running(solver) => solver.search.pause(),
+            Stage::Root(solver) | Stage::Running(solver) => solver.search.pause(),
             Stage::Waiting(solver) => {
                 let report = map::search_report(&solver.model, &solver.search);
                 outbox.push(self.job.run, Reply::Paused(Box::new(report)));
@@ -223,7 +228,9 @@ impl Lane {
                 Stage::Running(solver)
             }
             Stage::Begin | Stage::Read | Stage::Expanding(_) | Stage::Expanded(_) => {
-                self.fail(fault("rival", "stopped before its model was made"), outbox)
+                let report = map::nothing_searched("stopped before its model was made");
+                outbox.push(self.job.run, Reply::Done(Box::new(report)));
+                Stage::Over(None)
             }
             over @ Stage::Over(_) => over,
         };

@@ -176,8 +176,27 @@ fn stop_acts_in_the_next_slice_whatever_is_being_done() {
         let slices = (1..10).find(|_| !worker.advance(50)).expect("it ends");
         assert!(slices <= 3, "{slices} slices after {before}");
         let last = worker.take().pop().map(|envelope| envelope.reply);
-        assert!(matches!(last, Some(Reply::Done(_) | Reply::Failed(_))), "{last:?}");
+        assert!(matches!(last, Some(Reply::Done(_))), "{last:?}");
     }
+}
+
+#[test]
+fn a_root_pauses_and_goes_on() {
+    let mut worker = Worker::new();
+    worker.handle(load(job("atsp/multi-commodity")));
+    let understood = |worker: &mut Worker| {
+        worker.take().iter().any(|envelope| matches!(envelope.reply, Reply::Understood(_)))
+    };
+    while !understood(&mut worker) {
+        worker.advance(50);
+    }
+    let paused = replies(&mut worker, vec![Request::Pause]);
+    assert!(matches!(paused.last(), Some(Reply::Paused(_))), "{paused:?}");
+    assert!(!paused.iter().any(|reply| matches!(reply, Reply::Root(_))), "too easy to pause");
+    let done = replies(&mut worker, vec![Request::Run { nodes: None }]);
+    assert!(done.iter().any(|reply| matches!(reply, Reply::Root(_))), "{done:?}");
+    let Some(Reply::Done(report)) = done.last() else { panic!("{done:?}") };
+    assert_eq!((report.status, report.incumbent), (Status::Optimal, Some(shortest())));
 }
 
 #[test]

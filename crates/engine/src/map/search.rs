@@ -1,7 +1,7 @@
 //! What a search gave, so far or at its end.
 
 use model::{ColumnId, Model};
-use record::results::{SearchReport, SolutionEntry};
+use record::results::{SearchReport, SolutionEntry, Status};
 
 use super::{finite, status, tidy};
 
@@ -25,6 +25,23 @@ pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchRepor
         solution: solution(model, &summary.solution),
         checked: summary.checked,
         stopped: if paused { Some("paused".to_owned()) } else { summary.stopped },
+    }
+}
+
+/// The report of a search that never began.
+pub(crate) fn nothing_searched(why: &str) -> SearchReport {
+    SearchReport {
+        status: Status::Limit,
+        bound: None,
+        incumbent: None,
+        gap: None,
+        nodes: 0,
+        open: 0,
+        iterations: 0,
+        work: 0,
+        solution: Vec::new(),
+        checked: false,
+        stopped: Some(why.to_owned()),
     }
 }
 

@@ -1,3 +1,5 @@
+//! Every field of version 1, every kind of mistake, and print as the inverse of parse.
+
 use std::collections::BTreeMap;
 
 use proptest::collection::{btree_map, vec};

@@ -1,3 +1,5 @@
+//! Messages come back from their bytes; other bytes are refused.
+
 use super::*;
 use crate::event::{Event, NodeNumber};
 use crate::message::{LaneJob, Reply, RunNumber};

@@ -2,6 +2,7 @@
 
 use toml::Value;
 
+use crate::shipped::FAMILIES;
 use crate::{families, tables, text};
 
 /// A shipped formulation.
@@ -23,24 +24,13 @@ pub struct Entry {
     pub assumption: String,
     /// The variable in which rivals of the family are compared.
     pub natural: String,
-    /// Size in terms of n.
+    /// Size in terms of the numbers of stops, periods or arcs.
     pub size: String,
     /// What goes wrong with it in practice.
     pub pitfall: String,
     /// The journal notation.
     pub text: &'static str,
 }
-
-/// The notation texts by id.
-const TEXTS: &[(&str, &str)] = &[
-    ("atsp/assignment", include_str!("../formulations/atsp/assignment.txt")),
-    ("atsp/labels", include_str!("../formulations/atsp/labels.txt")),
-    ("atsp/lifted-labels", include_str!("../formulations/atsp/lifted-labels.txt")),
-    ("atsp/one-commodity", include_str!("../formulations/atsp/one-commodity.txt")),
-    ("atsp/multi-commodity", include_str!("../formulations/atsp/multi-commodity.txt")),
-    ("atsp/subtours", include_str!("../formulations/atsp/subtours.txt")),
-    ("atsp/cuts", include_str!("../formulations/atsp/cuts.txt")),
-];
 
 /// All shipped formulations, by family, in the order of the family's file.
 #[must_use]
@@ -49,9 +39,7 @@ pub fn entries() -> Vec<Entry> {
     for (family, table) in families() {
         for formulation in tables(&table, "formulation") {
             let id = text(formulation, "id");
-            let Some(&(_, notation)) = TEXTS.iter().find(|(known, _)| *known == id) else {
-                continue;
-            };
+            let Some(notation) = notation(id) else { continue };
             out.push(Entry {
                 id: id.to_owned(),
                 title: notation.lines().next().unwrap_or_default().trim().to_owned(),
@@ -70,6 +58,12 @@ pub fn entries() -> Vec<Entry> {
     out
 }
 
+/// The notation text of an id.
+fn notation(id: &str) -> Option<&'static str> {
+    let mut texts = FAMILIES.iter().flat_map(|family| family.texts);
+    texts.find(|(known, _)| *known == id).map(|&(_, text)| text)
+}
+
 /// The shipped formulation of that id.
 #[must_use]
 pub fn find(id: &str) -> Option<Entry> {
@@ -84,12 +78,13 @@ mod tests {
     fn every_text_is_described_once_and_every_description_has_a_text() {
         let entries = entries();
         let ids: Vec<&str> = entries.iter().map(|e| e.id.as_str()).collect();
-        let texts: Vec<&str> = TEXTS.iter().map(|&(id, _)| id).collect();
-        assert_eq!(ids, texts);
+        let texts = FAMILIES.iter().flat_map(|family| family.texts.iter().map(|&(id, _)| id));
+        assert_eq!(ids, texts.collect::<Vec<_>>());
         let described: usize = families().map(|(_, t)| tables(&t, "formulation").count()).sum();
-        assert_eq!(described, TEXTS.len());
+        assert_eq!(described, ids.len());
         for entry in &entries {
             assert!(!entry.title.is_empty() && !entry.citation.is_empty(), "{}", entry.id);
+            assert!(!entry.assumption.is_empty() && !entry.natural.is_empty(), "{}", entry.id);
             assert!(!entry.pitfall.is_empty() && !entry.size.is_empty(), "{}", entry.id);
         }
     }

@@ -13,6 +13,7 @@
 pub mod entry;
 pub mod generator;
 pub mod relation;
+mod shipped;
 
 pub use entry::{Entry, entries, find};
 pub use generator::{Class, generate};
@@ -20,12 +21,9 @@ pub use relation::{Level, Order, Relation, relations};
 
 use toml::{Table, Value};
 
-/// The families' own files: name and text.
-const FAMILIES: &[(&str, &str)] = &[("atsp", include_str!("../formulations/atsp/family.toml"))];
-
 /// The parsed file of each family. A test holds that every shipped file parses.
 fn families() -> impl Iterator<Item = (&'static str, Table)> {
-    FAMILIES.iter().filter_map(|&(name, text)| Some((name, text.parse().ok()?)))
+    shipped::FAMILIES.iter().filter_map(|family| Some((family.name, family.file.parse().ok()?)))
 }
 
 /// The tables of an array of tables, in order.

@@ -1,0 +1,38 @@
+//! What is shipped, as files: each family's own file and the notation texts of its rivals, in
+//! the order in which they are listed.
+
+/// A family's files.
+pub(crate) struct Family {
+    /// Its short name, the folder's.
+    pub(crate) name: &'static str,
+    /// `family.toml`.
+    pub(crate) file: &'static str,
+    /// The notation text of each rival by id.
+    pub(crate) texts: &'static [(&'static str, &'static str)],
+}
+
+/// A family's files by its name and those of its rivals.
+macro_rules! family {
+    ($family:literal: $($rival:literal),+) => {
+        Family {
+            name: $family,
+            file: include_str!(concat!("../formulations/", $family, "/family.toml")),
+            texts: &[$((
+                concat!($family, "/", $rival),
+                include_str!(concat!("../formulations/", $family, "/", $rival, ".txt")),
+            )),+],
+        }
+    };
+}
+
+/// All families.
+pub(crate) const FAMILIES: &[Family] = &[
+    family!(
+        "atsp": "assignment", "labels", "lifted-labels", "one-commodity", "two-commodity",
+        "multi-commodity", "subtours", "cuts"
+    ),
+    family!("tsp": "subtours"),
+    family!("path": "flow", "potentials"),
+    family!("ufl": "joined", "split"),
+    family!("lot": "big-m", "l-s", "location-form", "shortest-path-form"),
+];

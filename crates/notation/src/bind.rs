@@ -172,7 +172,9 @@ impl<'i> Binder<'i> {
             }
             _ => return fail(message::shape(&symbol.name, &wanted, noun(datum), symbol.span)),
         };
-        Ok(Value::Set(Rc::new(Set::new(roots.len(), tuples))))
+        let mut set = Set::new(roots.len(), tuples);
+        set.by_value = matches!(datum, Datum::Integers(_));
+        Ok(Value::Set(Rc::new(set)))
     }
 
     /// `A ⊆ V × V`, `r ∈ V`, `c ≥ 0`, `n ∈ ℤ`.

@@ -302,3 +302,74 @@ fn slices_do_not_change_the_model() {
         assert_eq!(expansion.finish().unwrap().0, whole, "{ticks}");
     }
 }
+
+#[test]
+fn leaving_and_entering_arcs() {
+    let (_, out) = subsets("", "  x(δ⁺(S)) ≥ 1 ∀ S ⊂ V : S ≠ ∅ (rows)");
+    assert_eq!(out[1], "x[Birch → Cedar] ≥ 1", "Birch alone");
+    assert_eq!(
+        subsets(
+            "",
+            "  x(\\delta^+(S)) \\ge 1 \\quad \\forall S \\subset V : S \\ne \\emptyset \\tag{rows}"
+        )
+        .1,
+        out
+    );
+    let (_, into) = subsets("", "  x(δ^-(S)) ≥ 1 ∀ S ⊂ V : S ≠ ∅ (rows)");
+    assert_eq!(into[1], "x[Ash → Birch] ≥ 1");
+    let (_, written) = subsets("", "  Σ_{(i,j) ∈ δ^+(S)} x_{i,j} ≥ 1 ∀ S ⊂ V : S ≠ ∅ (rows)");
+    assert_eq!(written, out);
+    let (_, across) =
+        subsets("", "  Σ_{i ∈ S, j ∉ S : (i,j) ∈ E} x_{ij} ≥ 1 ∀ S ⊂ V : S ≠ ∅ (rows)");
+    assert_eq!(across, out);
+    let (_, across) =
+        subsets("", "  Σ_{i ∈ S} Σ_{j ∈ V ∖ S : (i,j) ∈ E} x_{ij} ≥ 1 ∀ S ⊂ V : S ≠ ∅ (rows)");
+    assert_eq!(across, out);
+}
+
+#[test]
+fn elements_that_an_index_gives() {
+    let mut instance = kitchen();
+    let pair = |a: &str, b: &str| vec![a.to_owned(), b.to_owned()];
+    let rows = vec![pair("red", "Cedar"), pair("blue", "Ash")];
+    instance.set("o", instance::Datum::Tuples { arity: 2, rows });
+    let text = around(
+        "  V\n  K\n  o_k ∈ V ∀ k ∈ K",
+        "",
+        "  z_{o_k} ≤ 1 + z_i ∀ k ∈ K, i ∈ V : i ≠ o_k (rows)",
+    );
+    let model = made(&text, &instance);
+    assert_eq!(rows_of(&model, "rows").len(), 8);
+    assert_eq!(rows_of(&model, "rows")[0], "−z[Ash] + z[Cedar] ≤ 1");
+}
+
+/// Labels compare by their place in the listing, also when they look like numbers; whole
+/// numbers by value.
+#[test]
+fn order_of_labels_and_of_numbers() {
+    let own = |names: &[&str]| names.iter().map(|&n| n.to_owned()).collect::<Vec<_>>();
+    let mut instance = instance::Instance::new(instance::Reader::Blocks);
+    let text = "data\n  V\nminimise\n  Σ_{i ∈ V} z_i\nsubject to\n  z_i ≥ 0 ∀ i ∈ V\n  z_i ≥ z_j ∀ i, j ∈ V : i < j (rows)\n";
+    instance.set("V", instance::Datum::Labels(own(&["10", "9", "x"])));
+    assert_eq!(rows_of(&made(text, &instance), "rows")[0], "z[10] − z[9] ≥ 0");
+    instance.set("V", instance::Datum::Integers(vec![10, 9]));
+    assert_eq!(rows_of(&made(text, &instance), "rows"), ["−z[10] + z[9] ≥ 0"]);
+}
+
+/// The mends of an undeclared name: either makes the text say what the name is.
+#[test]
+fn mends_can_be_applied() {
+    use hullward_notation::{check, parse};
+    let text = around("  V", "", "  z_i ≤ 2 w_i ∀ i ∈ V (rows)");
+    let (_, found) = check(&parse(&text).tree);
+    let labels: Vec<&str> = found[0].mends.iter().map(|m| m.label.as_str()).collect();
+    assert_eq!(labels, ["make it a variable", "make it a datum"]);
+    for mend in &found[0].mends {
+        let edit = mend.edit.as_ref().unwrap();
+        let mut mended = text.clone();
+        mended.replace_range(edit.span.clone(), &edit.text);
+        let (_, found) = check(&parse(&mended).tree);
+        let codes: Vec<_> = found.iter().map(|d| d.code).collect();
+        assert!(!codes.contains(&"name.undeclared"), "{mended}\n{codes:?}");
+    }
+}

@@ -17,6 +17,8 @@ pub(super) struct Quantifier<'e> {
     deferred: Vec<Expression>,
     pub(super) carriers: Vec<&'e Expression>,
     subsets: bool,
+    /// Whether the item at hand stands behind the colon.
+    behind_colon: bool,
 }
 
 impl Checker<'_> {
@@ -35,13 +37,16 @@ impl Checker<'_> {
             deferred: Vec::new(),
             carriers: carriers.to_vec(),
             subsets,
+            behind_colon: false,
         };
         let mut sound = true;
         for clause in clauses {
+            work.behind_colon = false;
             for item in &clause.items {
                 sound &= self.item(item, &mut work).is_some();
             }
             work.fenced = work.pending.len();
+            work.behind_colon = true;
             for item in &clause.such_that {
                 sound &= self.item(item, &mut work).is_some();
             }
@@ -122,6 +127,11 @@ impl Checker<'_> {
         }
         let new: Vec<&Name> = operands.iter().filter_map(|o| self.new_name(o, work)).collect();
         if new.is_empty() {
+            if let (Kind::Name(name), Relation::In, false) =
+                (&first.kind, links[0].0, work.behind_colon)
+            {
+                let _: Option<()> = self.report(message::bound_already(&name.text, item.span));
+            }
             return self.condition_step(item, work);
         }
         if self.bounded_chain(&operands, links, work)? {

@@ -102,7 +102,7 @@ impl<'t> Checker<'t> {
     fn needs(&self, declared: &Declared<'t>) -> Vec<SymbolId> {
         let mut words = BTreeSet::new();
         for expression in usage::of_line(declared.line) {
-            words_of(expression, &mut words);
+            usage::words(expression, &mut words);
         }
         let mut found = BTreeSet::new();
         for word in words {
@@ -299,15 +299,6 @@ fn turned(relation: Relation) -> Relation {
         Relation::Greater => Relation::Less,
         Relation::AtLeast => Relation::AtMost,
         other => other,
-    }
-}
-
-fn words_of<'e>(expression: &'e Expression, words: &mut BTreeSet<&'e str>) {
-    if let Kind::Name(name) | Kind::Call(name, _) = &expression.kind {
-        words.insert(&name.text);
-    }
-    for child in usage::children(expression) {
-        words_of(child, words);
     }
 }
 

@@ -3,7 +3,7 @@
 use super::{Checker, Form, Global, Typed};
 use crate::diagnostic::{rows, shapes as message};
 use crate::place::Span;
-use crate::plan::{Node, Root, Slot};
+use crate::plan::{Node, Root, Slot, Step};
 use crate::syntax::{Additive, Big, Clause, Expression, Function, Kind, Multiplicative, Name};
 
 impl Checker<'_> {
@@ -242,13 +242,14 @@ impl Checker<'_> {
     fn big(&mut self, big: Big, clause: &Clause, body: &Expression, span: Span) -> Option<Typed> {
         let outer = self.locals.len();
         let steps = self.quantify(std::slice::from_ref(clause), &[body], false);
-        let steps = match steps {
-            Some(steps) => steps,
-            None => {
-                self.locals.truncate(outer);
-                return None;
-            }
+        let binds = self.locals.len() > outer;
+        let Some(steps) = steps else {
+            self.locals.truncate(outer);
+            return None;
         };
+        if !binds && !matches!(steps[..], [Step::Over { .. }, ..]) {
+            return self.report(crate::diagnostic::names::no_index(clause.span));
+        }
         let body = self.numeric(body);
         self.locals.truncate(outer);
         let body = body?;

@@ -4,7 +4,7 @@ use super::{Bound, Checker, Form, Global, Typed};
 use crate::diagnostic::names as message;
 use crate::place::Span;
 use crate::plan::{Node, Shape};
-use crate::syntax::{Expression, Kind, Name};
+use crate::syntax::{Clause, Expression, Formulation, Kind, Name};
 use model::Number;
 
 /// The longest word that is split.
@@ -70,10 +70,12 @@ impl Checker<'_> {
 
     fn additions(&self, name: &str) -> message::Additions {
         let after = |span: Span| Span { start: span.end, end: span.end };
-        let used = usage_of(self.tree, name);
-        let shown = used.map_or_else(|| name.to_owned(), crate::print::expression);
+        let used = first_use(self.tree, name);
+        let shown =
+            used.map_or_else(|| name.to_owned(), |(used, clauses)| with_clauses(used, &clauses));
         let variable = self.tree.ends.statements.map(after);
-        let variable = variable.map(|at| (at, format!("\n  {shown} ≥ 0")));
+        let variable =
+            variable.map(|at| (at, format!("\n  {}", shown.replacen("  ∀", " ≥ 0  ∀", 1))));
         let datum = self.tree.ends.data.map(|at| (after(at), format!("\n  {shown}")));
         message::Additions { variable, datum }
     }
@@ -164,23 +166,55 @@ impl Checker<'_> {
     }
 }
 
-/// The first use of a name in the statements and the objective, with its indices.
-fn usage_of<'t>(tree: &'t crate::syntax::Formulation, name: &str) -> Option<&'t Expression> {
-    let operands = tree
-        .statements
-        .iter()
-        .flat_map(|line| line.left.iter().chain(line.links.iter().map(|(_, operand)| operand)));
-    let objective = tree.objective.iter().map(|o| &o.expression);
-    operands.chain(objective).find_map(|operand| find_name(operand, name))
+/// The first use of a name in the statements and the objective, with its indices and the
+/// clauses around it.
+fn first_use<'t>(tree: &'t Formulation, name: &str) -> Option<(&'t Expression, Vec<&'t Clause>)> {
+    let lines = tree.statements.iter().flat_map(|line| {
+        let links = line.links.iter().map(|(_, operand)| operand);
+        line.left.iter().chain(links).map(|operand| (operand, line.clauses.iter().collect()))
+    });
+    let objective = tree.objective.iter().map(|o| (&o.expression, Vec::new()));
+    lines.chain(objective).find_map(|(operand, clauses)| find_name(operand, name, clauses))
 }
 
-fn find_name<'t>(expression: &'t Expression, name: &str) -> Option<&'t Expression> {
+fn find_name<'t>(
+    expression: &'t Expression,
+    name: &str,
+    mut clauses: Vec<&'t Clause>,
+) -> Option<(&'t Expression, Vec<&'t Clause>)> {
     if let Kind::Name(found) = &expression.kind
         && found.text == name
     {
-        return Some(expression);
+        return Some((expression, clauses));
     }
-    super::usage::children(expression).into_iter().find_map(|child| find_name(child, name))
+    if let Kind::Big(_, clause, _) = &expression.kind {
+        clauses.push(clause);
+    }
+    let children = super::usage::children(expression);
+    children.into_iter().find_map(|child| find_name(child, name, clauses.clone()))
+}
+
+/// `w_{i,j}  ∀ i ∈ V  ∀ j : (i,j) ∈ A`: a use as a declaration.
+fn with_clauses(used: &Expression, clauses: &[&Clause]) -> String {
+    let mut out = crate::print::expression(used);
+    let Kind::Name(name) = &used.kind else { return out };
+    let mentions = |clause: &Clause| {
+        let mut items = clause.items.iter().chain(&clause.such_that);
+        name.indices.iter().any(|index| items.any(|item| holds_word(item, index)))
+    };
+    for clause in clauses.iter().filter(|clause| mentions(clause)) {
+        out += &format!("  ∀ {}", crate::print::clause(clause));
+    }
+    out
+}
+
+/// Whether a name of one letter or more in `index` stands somewhere in `item`.
+fn holds_word(item: &Expression, index: &Expression) -> bool {
+    let mut words = std::collections::BTreeSet::new();
+    super::usage::words(item, &mut words);
+    let mut wanted = std::collections::BTreeSet::new();
+    super::usage::words(index, &mut wanted);
+    wanted.iter().any(|w| words.contains(w) || words.iter().any(|word| w.contains(word)))
 }
 
 fn text(piece: &Piece) -> String {

@@ -1,7 +1,7 @@
 //! What the text as a whole tells about a name that is declared without a shape: whether it
 //! is used as a set, and of how many places.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 use crate::syntax::{
     Additive, Clause, Expression, Formulation, Function, Kind, Line, Multiplicative, Relation,
@@ -47,6 +47,16 @@ pub(super) fn of_line(line: &Line) -> Vec<&Expression> {
 
 pub(super) fn of_clause(clause: &Clause) -> impl Iterator<Item = &Expression> {
     clause.items.iter().chain(&clause.such_that)
+}
+
+/// Every word in an expression.
+pub(super) fn words<'e>(expression: &'e Expression, found: &mut BTreeSet<&'e str>) {
+    if let Kind::Name(name) | Kind::Call(name, _) = &expression.kind {
+        found.insert(&name.text);
+    }
+    for child in children(expression) {
+        words(child, found);
+    }
 }
 
 /// The names that are used as sets, with the size of the tuples that are sought in them.

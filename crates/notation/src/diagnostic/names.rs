@@ -39,11 +39,23 @@ pub(crate) fn circular(name: &str, span: Span) -> Diagnostic {
 
 pub(crate) fn not_a_name(span: Span) -> Diagnostic {
     Diagnostic::error("name.expected", span, "expected a single name to declare")
+        .mend("put two spaces before a remark")
 }
 
 pub(crate) fn taken(name: &str, span: Span, what: &str) -> Diagnostic {
     let message = format!("the index {} has the name of a {what}", short(name));
     Diagnostic::error("name.taken", span, message).mend("give the index another name")
+}
+
+pub(crate) fn bound_already(name: &str, span: Span) -> Diagnostic {
+    let message = format!("{} has a meaning already, so this is a condition on it", short(name));
+    Diagnostic::warning("name.bound", span, message)
+        .mend("if a new index is meant, give it another name")
+}
+
+pub(crate) fn no_index(span: Span) -> Diagnostic {
+    Diagnostic::error("name.no-index", span, "nothing new is bound here to sum over")
+        .mend("give the index a name that has no meaning yet")
 }
 
 pub(crate) fn label_twice(label: &str, span: Span, first: Span) -> Diagnostic {

@@ -61,6 +61,14 @@ pub(crate) fn empty_domain(name: &str, span: Span) -> Diagnostic {
     Diagnostic::warning("row.empty-domain", span, message)
 }
 
+pub(crate) fn unbounded(column: &str, span: Span) -> Diagnostic {
+    let message = format!(
+        "{} stands in no row, and the objective improves without end along it",
+        short_tuple(column)
+    );
+    Diagnostic::warning("row.unbounded", span, message).mend("give it a bound")
+}
+
 pub(crate) fn objective_infinite(span: Span) -> Diagnostic {
     Diagnostic::error("row.infinite", span, "∞ can stand only as a bound")
 }

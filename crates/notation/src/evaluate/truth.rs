@@ -20,14 +20,14 @@ impl Evaluator {
             }
             Node::Ordered(relation, a, b, root, span) => {
                 let (a, b) = (self.element(a, env)?, self.element(b, env)?);
-                let pool = self.pool.borrow();
-                if let (Some(a), Some(b)) = (pool.whole(a), pool.whole(b)) {
-                    return Ok(Guard::known(stands(*relation, a.cmp(&b))));
-                }
                 let Some(super::Values::Single(super::Value::Set(set))) = &self.values[*root]
                 else {
                     return fail(shapes::not_comparable(*span));
                 };
+                let pool = self.pool.borrow();
+                if let (true, Some(a), Some(b)) = (set.by_value, pool.whole(a), pool.whole(b)) {
+                    return Ok(Guard::known(stands(*relation, a.cmp(&b))));
+                }
                 match (set.position(&[a]), set.position(&[b])) {
                     (Some(a), Some(b)) => Ok(Guard::known(stands(*relation, a.cmp(&b)))),
                     _ => fail(shapes::not_comparable(*span)),

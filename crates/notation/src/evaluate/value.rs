@@ -54,6 +54,8 @@ type Slice = BTreeMap<Vec<Element>, Rc<Vec<u32>>>;
 #[derive(Debug, Default)]
 pub(crate) struct Set {
     pub(crate) arity: usize,
+    /// Whether its members are compared by value, not by their place in the listing.
+    pub(crate) by_value: bool,
     flat: Vec<Element>,
     lookup: BTreeMap<Vec<Element>, u32>,
     slices: RefCell<BTreeMap<u32, Rc<Slice>>>,

@@ -72,6 +72,8 @@ pub struct Expansion {
     draft: Draft,
     /// Bounds of the columns so far.
     bounds: Vec<(Option<Number>, Option<Number>)>,
+    /// Whether each column stands in a row.
+    in_rows: Vec<bool>,
     costs: BTreeMap<u32, Number>,
     offset: Number,
     nonzeros: usize,
@@ -100,6 +102,7 @@ impl Expansion {
             labels: Vec::new(),
             draft: Draft::default(),
             bounds: Vec::new(),
+            in_rows: Vec::new(),
             costs: BTreeMap::new(),
             offset: Number::ZERO,
             nonzeros: 0,
@@ -283,10 +286,41 @@ impl Expansion {
 
     fn offset_and_costs(&mut self) {
         self.builder.offset(std::mem::take(&mut self.offset));
+        self.unbounded_columns();
         for (column, cost) in std::mem::take(&mut self.costs) {
             if let Err(error) = self.builder.cost(model::ColumnId(column), &cost) {
                 self.errors.push(size::model(error.to_string(), crate::place::Span::default()));
             }
+        }
+    }
+
+    fn mark_columns(&mut self, columns: impl Iterator<Item = usize>) {
+        self.in_rows.resize(self.bounds.len(), false);
+        for column in columns {
+            self.in_rows[column] = true;
+        }
+    }
+
+    /// A column in no row along which the objective has no end; one of each variable is told.
+    fn unbounded_columns(&mut self) {
+        let plan = std::rc::Rc::clone(&self.evaluator.plan);
+        self.mark_columns(std::iter::empty());
+        for (number, variable) in plan.variables.iter().enumerate() {
+            let endless = |column: u32| {
+                let index = column as usize;
+                let cost = self.costs.get(&column).filter(|cost| !cost.is_zero())?;
+                let falls = (*cost > Number::ZERO) != plan.maximise;
+                let (lower, upper) = &self.bounds[index];
+                let open = if falls { lower.is_none() } else { upper.is_none() };
+                (open && !self.in_rows[index]).then_some(())
+            };
+            let columns = &self.evaluator.columns[number].at;
+            let Some((tuple, _)) = columns.iter().find(|(_, column)| endless(**column).is_some())
+            else {
+                continue;
+            };
+            let name = self.evaluator.shown(&variable.name, tuple, is_arrow(&variable.roots));
+            self.warnings.push(crate::diagnostic::rows::unbounded(&name, variable.span));
         }
     }
 }

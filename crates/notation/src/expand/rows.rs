@@ -151,6 +151,7 @@ impl Expansion {
             return Ok(());
         }
         self.nonzeros += row.entries.len();
+        self.mark_columns(row.entries.iter().map(|(column, _)| column.index()));
         let labels = self.label_tuple(&tuple);
         match self.builder.row(&labels, row) {
             Ok(_) => Ok(()),

@@ -42,6 +42,7 @@ impl Expansion {
             found.conditions.clone_from(&conditions);
             *budget = budget.saturating_sub(found.terms.len() as u64);
             self.nonzeros += found.terms.len();
+            self.mark_columns(found.terms.iter().map(|term| term.column.index()));
             self.check_empty_member(subset, &found)?;
             self.family.seen += 1;
             self.add_subset_family(family, found)?;

@@ -1,0 +1,118 @@
+//! Round trips: shipped rivals on an instance, their roots and optima, and the values that
+//! `fixtures/round_trips.json` holds for TSPLIB instances.
+
+use std::collections::BTreeMap;
+use std::path::Path;
+use std::rc::Rc;
+
+use instance::Instance;
+use model::Model;
+use serde_json::Value;
+use tree::{Progress, RootResult, Search, Settings, Summary};
+
+/// Work in one slice: large, for nobody waits between slices here.
+const SLICE: u64 = 10_000_000;
+
+/// An instance from its text.
+///
+/// # Panics
+/// When the text cannot be read.
+#[must_use]
+pub fn instance(text: &str) -> Instance {
+    let reading = instance::read(text, None);
+    reading.instance.unwrap_or_else(|| panic!("not read: {:?}", reading.complaints))
+}
+
+/// A shipped rival on an instance.
+///
+/// # Panics
+/// When there is no such rival, or it does not fit the instance.
+#[must_use]
+pub fn rival(id: &str, instance: &Instance) -> Rc<Model> {
+    let entry = catalogue::find(id).unwrap_or_else(|| panic!("no rival {id}"));
+    formulation(entry.text, instance)
+}
+
+/// A notation text on an instance.
+///
+/// # Panics
+/// When the text is wrong or does not fit the instance.
+#[must_use]
+pub fn formulation(text: &str, instance: &Instance) -> Rc<Model> {
+    match notation::model(text, instance, &BTreeMap::new(), &BTreeMap::new()) {
+        Ok((model, _)) => Rc::new(model),
+        Err(diagnostics) => panic!("{diagnostics:?}"),
+    }
+}
+
+/// The relaxation of a model, its own families separated.
+///
+/// # Panics
+/// When the search ends without a root.
+#[must_use]
+pub fn root(model: &Rc<Model>) -> RootResult {
+    let settings = Settings { search: false, ..Settings::default() };
+    let mut search = Search::new(Rc::clone(model), settings);
+    while search.advance(SLICE) == Progress::Working {}
+    search.root().unwrap().clone()
+}
+
+/// A whole search.
+#[must_use]
+pub fn solve(model: &Rc<Model>, settings: Settings) -> Summary {
+    let mut search = Search::new(Rc::clone(model), settings);
+    search.run(None);
+    while search.advance(SLICE) != Progress::Finished {
+        search.run(None);
+    }
+    search.summary()
+}
+
+/// A value for a TSPLIB instance, with where it comes from.
+#[derive(Debug, Clone)]
+pub struct Published {
+    /// The instance's name in TSPLIB.
+    pub instance: String,
+    /// The rival, or `optimum`.
+    pub rival: String,
+    /// What is measured.
+    pub quantity: String,
+    /// The value.
+    pub value: f64,
+    /// How far it may be off.
+    pub tolerance: f64,
+    /// Where it comes from.
+    pub source: String,
+}
+
+/// All values of the fixture.
+///
+/// # Panics
+/// When the fixture cannot be read.
+#[must_use]
+pub fn values() -> Vec<Published> {
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("fixtures/round_trips.json");
+    let values: Value = serde_json::from_str(&std::fs::read_to_string(path).unwrap()).unwrap();
+    let text = |value: &Value, key: &str| value[key].as_str().unwrap().to_owned();
+    let entry = |value: &Value| Published {
+        instance: text(value, "instance"),
+        rival: text(value, "rival"),
+        quantity: text(value, "quantity"),
+        value: value["value"].as_f64().unwrap(),
+        tolerance: value["tolerance"].as_f64().unwrap(),
+        source: text(value, "source"),
+    };
+    values.as_array().unwrap().iter().map(entry).collect()
+}
+
+/// A TSPLIB instance by name, or `None` when the open data are not at hand.
+#[must_use]
+pub fn tsplib(name: &str) -> Option<Instance> {
+    let symmetric = ["tsp", "atsp"].iter().find_map(|ending| {
+        let file = format!("tsplib/{name}.{ending}");
+        let folder = std::env::var_os("HULLWARD_DATA")?;
+        Path::new(&folder).join(&file).exists().then_some(file)
+    });
+    let file = symmetric.unwrap_or_else(|| format!("tsplib/{name}.tsp"));
+    crate::open_data(&file, crate::TSPLIB).map(|text| instance(&text))
+}

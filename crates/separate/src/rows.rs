@@ -26,6 +26,7 @@ pub struct RowSeparator {
     next: u32,
     x: Vec<f64>,
     found: Vec<ViolatedRow>,
+    ticks: u64,
 }
 
 impl RowSeparator {
@@ -33,7 +34,7 @@ impl RowSeparator {
     #[must_use]
     pub fn new(model: &Model, family: FamilyId) -> Self {
         let rows = model.families()[family.index()].rows.clone();
-        Self { next: rows.end, rows, x: Vec::new(), found: Vec::new() }
+        Self { next: rows.end, rows, x: Vec::new(), found: Vec::new(), ticks: 0 }
     }
 
     /// Begins a round at `x`, one value a column.
@@ -46,21 +47,27 @@ impl RowSeparator {
     /// Scans rows until `ticks` entries have been looked at. `model` is the one that the
     /// separator was made for.
     pub fn advance(&mut self, model: &Model, ticks: u64) -> Progress {
-        let mut spent = 0;
+        let end = self.ticks.saturating_add(ticks);
         while self.next < self.rows.end {
-            if spent >= ticks {
+            if self.ticks >= end {
                 return Progress::Working;
             }
             let row = RowId(self.next);
             self.next += 1;
             let entries = model.row_entries(row);
-            spent += 1 + u64::try_from(entries.len()).unwrap_or(u64::MAX);
+            self.ticks += 1 + u64::try_from(entries.len()).unwrap_or(u64::MAX);
             let violation = violation(model, row, &self.x);
             if violation > tolerance::VIOLATION {
                 self.found.push(ViolatedRow { row, violation });
             }
         }
         Progress::Finished
+    }
+
+    /// Entries looked at since the separator was made: the same for every slicing.
+    #[must_use]
+    pub fn ticks(&self) -> u64 {
+        self.ticks
     }
 
     /// The violated rows of the round, the most violated first, equal ones by row; at most 100.

@@ -153,11 +153,6 @@ impl Relaxation {
         }
     }
 
-    /// Whether a written row is in the relaxation now.
-    pub(crate) fn holds(&self, row: RowId) -> bool {
-        self.written[row.index()]
-    }
-
     /// How many rows there are.
     pub(crate) fn row_count(&self) -> usize {
         self.origins.len()

@@ -1,53 +1,52 @@
 //! One round of separation: every family over subsets, and every written family on demand.
 //!
 //! A round looks at one point and finds rows that it violates: the families over subsets by
-//! their separators, one after the other, then the written rows that are not in the relaxation.
+//! their separators, one after the other, then the written families that are on demand.
 
 use std::rc::Rc;
 
-use model::{FamilyState, Model, RowId, SubsetFamilyId};
-use separate::{Progress, Separator};
+use model::{FamilyId, FamilyState, Model, SubsetFamilyId};
+use separate::{Progress, RowSeparator, Separator};
 
-use crate::relaxation::{Addition, Relaxation, RowOrigin};
-
-/// A row counts as violated from here on; absolute, in the units of the row.
-const VIOLATION: f64 = 1e-6;
+use crate::relaxation::{Addition, RowOrigin};
 
 /// The separators of a model and the round in hand.
 #[derive(Debug)]
 pub(crate) struct Rounds {
     model: Rc<Model>,
     separators: Vec<Separator>,
-    on_demand: Vec<RowId>,
+    rows: Vec<RowSeparator>,
     x: Vec<f64>,
+    /// The separator at work: those of families over subsets first.
     next: usize,
     running: bool,
-    scanned: usize,
     found: Vec<Addition>,
-    ticks: u64,
+    /// Rounds of single separators that have ended, each a tick of its own.
+    ended: u64,
 }
 
 impl Rounds {
     pub(crate) fn new(model: &Rc<Model>) -> Self {
-        let families = (0..model.subset_families().len()).map(SubsetFamilyId::from_index);
-        let rows = (0..model.row_count()).map(RowId::from_index);
-        let state = |row: RowId| model.families()[model.row_family(row).index()].state;
+        let over_subsets = (0..model.subset_families().len()).map(SubsetFamilyId::from_index);
+        let written = model.families().iter().enumerate();
+        let on_demand =
+            written.filter(|(_, f)| f.state == FamilyState::OnDemand && !f.rows.is_empty());
+        let row_separator = |(index, _)| RowSeparator::new(model, FamilyId::from_index(index));
         Self {
-            separators: families.map(|id| Separator::new(model, id)).collect(),
-            on_demand: rows.filter(|&row| state(row) == FamilyState::OnDemand).collect(),
+            separators: over_subsets.map(|id| Separator::new(model, id)).collect(),
+            rows: on_demand.map(row_separator).collect(),
             model: Rc::clone(model),
             x: Vec::new(),
             next: 0,
             running: false,
-            scanned: 0,
             found: Vec::new(),
-            ticks: 0,
+            ended: 0,
         }
     }
 
     /// Whether there is nothing to separate.
     pub(crate) fn is_empty(&self) -> bool {
-        self.separators.is_empty() && self.on_demand.is_empty()
+        self.separators.is_empty() && self.rows.is_empty()
     }
 
     /// The separators in the order of the model's families over subsets.
@@ -61,58 +60,62 @@ impl Rounds {
         self.x.extend_from_slice(x);
         self.next = 0;
         self.running = false;
-        self.scanned = 0;
         self.found.clear();
     }
 
     /// Works on for about `ticks`; true when the round is done.
-    pub(crate) fn advance(&mut self, ticks: u64, relaxation: &Relaxation) -> bool {
-        let stop = self.ticks.saturating_add(ticks);
-        while self.ticks < stop {
-            if self.next < self.separators.len() {
-                self.separate(stop - self.ticks);
-            } else if self.scanned < self.on_demand.len() {
-                self.scan(relaxation);
-            } else {
-                return true;
+    pub(crate) fn advance(&mut self, ticks: u64) -> bool {
+        let stop = self.ticks().saturating_add(ticks);
+        let all = self.separators.len() + self.rows.len();
+        while self.next < all {
+            let now = self.ticks();
+            if now >= stop {
+                return false;
             }
+            let done = if self.next < self.separators.len() {
+                self.members(stop - now)
+            } else {
+                self.written(stop - now)
+            };
+            self.running = !done;
+            self.next += usize::from(done);
+            self.ended += u64::from(done);
         }
-        self.next == self.separators.len() && self.scanned == self.on_demand.len()
+        true
     }
 
-    fn separate(&mut self, ticks: u64) {
+    /// Goes on with a family over subsets; true when it is done.
+    fn members(&mut self, ticks: u64) -> bool {
         let separator = &mut self.separators[self.next];
         if !self.running {
             separator.start(&self.x);
-            self.running = true;
         }
-        let before = separator.ticks();
-        let done = separator.advance(ticks) == Progress::Finished;
-        self.ticks += separator.ticks() - before;
-        if done {
-            let violated = separator.take().into_iter();
-            self.found.extend(violated.map(|v| Addition {
-                origin: RowOrigin::Member { family: v.family, subset: v.subset },
-                row: v.row,
-            }));
-            self.next += 1;
-            self.ticks += 1;
-            self.running = false;
+        if separator.advance(ticks) == Progress::Working {
+            return false;
         }
+        let violated = separator.take().into_iter();
+        self.found.extend(violated.map(|v| Addition {
+            origin: RowOrigin::Member { family: v.family, subset: v.subset },
+            row: v.row,
+        }));
+        true
     }
 
-    /// Looks at one written row.
-    fn scan(&mut self, relaxation: &Relaxation) {
-        let row = self.on_demand[self.scanned];
-        self.scanned += 1;
-        self.ticks += 1;
-        if relaxation.holds(row) {
-            return;
+    /// Goes on with a written family; true when it is done.
+    fn written(&mut self, ticks: u64) -> bool {
+        let separator = &mut self.rows[self.next - self.separators.len()];
+        if !self.running {
+            separator.start(&self.x);
         }
-        self.ticks += self.model.row_entries(row).len() as u64;
-        if outside(&self.model, row, &self.x) > VIOLATION {
-            self.found.push(Addition { origin: RowOrigin::Written(row), row: self.model.row(row) });
+        if separator.advance(&self.model, ticks) == Progress::Working {
+            return false;
         }
+        let violated = separator.take().into_iter();
+        let model = &self.model;
+        self.found.extend(
+            violated.map(|v| Addition { origin: RowOrigin::Written(v.row), row: model.row(v.row) }),
+        );
+        true
     }
 
     /// What the round found.
@@ -122,17 +125,8 @@ impl Rounds {
 
     /// Non-zeros touched so far.
     pub(crate) fn ticks(&self) -> u64 {
-        self.ticks
+        let members = self.separators.iter().map(Separator::ticks);
+        let rows = self.rows.iter().map(RowSeparator::ticks);
+        self.ended + members.chain(rows).sum::<u64>()
     }
-}
-
-/// By how much a point is outside the sides of a written row; at most 0 when it is not.
-pub(crate) fn outside(model: &Model, row: RowId, x: &[f64]) -> f64 {
-    let numbers = model.numbers();
-    let terms = model.row_entries(row).iter();
-    let activity = terms.fold(0.0, |sum, &(c, a)| sum + numbers.float(a) * x[c.index()]);
-    let (lower, upper) = model.row_sides(row);
-    let under = lower.map_or(f64::NEG_INFINITY, |n| numbers.float(n) - activity);
-    let over = upper.map_or(f64::NEG_INFINITY, |n| activity - numbers.float(n));
-    if under > over { under } else { over }
 }

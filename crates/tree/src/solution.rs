@@ -12,7 +12,6 @@ use proof::Point;
 use separate::{Membership, Separator, Violated};
 
 use crate::relaxation::{float_bounds, is_meant, problem};
-use crate::rounds::outside;
 
 /// By how much a row may be broken in a solution with continuous columns; absolute, in the
 /// units of the row. Such a solution counts as unchecked.
@@ -177,6 +176,17 @@ impl Checker {
     pub(crate) fn iterations(&self) -> u64 {
         self.iterations
     }
+}
+
+/// By how much a point is outside the sides of a written row; at most 0 when it is not.
+fn outside(model: &Model, row: RowId, x: &[f64]) -> f64 {
+    let numbers = model.numbers();
+    let terms = model.row_entries(row).iter();
+    let activity = terms.fold(0.0, |sum, &(c, a)| sum + numbers.float(a) * x[c.index()]);
+    let (lower, upper) = model.row_sides(row);
+    let under = lower.map_or(f64::NEG_INFINITY, |n| numbers.float(n) - activity);
+    let over = upper.map_or(f64::NEG_INFINITY, |n| activity - numbers.float(n));
+    if under > over { under } else { over }
 }
 
 #[cfg(test)]

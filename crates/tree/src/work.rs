@@ -33,7 +33,7 @@ impl Search {
                 self.relaxed()
             }
             Job::Separate => {
-                if !self.rounds.advance(ticks, self.relaxation.as_ref()?) {
+                if !self.rounds.advance(ticks) {
                     return None;
                 }
                 self.separated()

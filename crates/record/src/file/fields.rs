@@ -43,14 +43,13 @@ impl Findings {
     }
 
     fn wrong_type(&mut self, key: &str, value: &Spanned<DeValue<'_>>, wanted: &str) {
-        let found = value.get_ref().type_str();
-        let message = format!("`{key}` must be {wanted}, not {found} here");
-        self.error(
-            "wrong-type",
-            value.span(),
-            message,
-            format!("write {key} = {}", sample(wanted)),
-        );
+        let found = found(value.get_ref());
+        let message = format!("`{key}` must be {wanted}, not {found}");
+        let mend = match sample(wanted) {
+            Some(sample) => format!("write {key} = {sample}"),
+            None => format!("write [{key}]"),
+        };
+        self.error("wrong-type", value.span(), message, mend);
     }
 
     /// A string.
@@ -247,13 +246,25 @@ fn listed(names: &[&str]) -> String {
     names.iter().map(|name| format!("`{name}`")).collect::<Vec<_>>().join(", ")
 }
 
-/// What a value of a type looks like.
-fn sample(wanted: &str) -> &'static str {
+/// What stands there instead, in words.
+fn found(value: &DeValue<'_>) -> &'static str {
+    match value {
+        DeValue::String(_) => "a text",
+        DeValue::Integer(_) | DeValue::Float(_) => "a number",
+        DeValue::Boolean(_) => "true or false",
+        DeValue::Datetime(_) => "a date",
+        DeValue::Array(_) => "a list",
+        DeValue::Table(_) => "a table",
+    }
+}
+
+/// What a value of a type looks like; a table is written under its heading.
+fn sample(wanted: &str) -> Option<&'static str> {
     match wanted {
-        "a text" => "\"…\"",
-        "true or false" => "true",
-        "a list of texts" => "[\"…\", \"…\"]",
-        "a table" => "{ name = \"…\" }",
-        _ => "1",
+        "a text" => Some("\"…\""),
+        "true or false" => Some("true"),
+        "a list of texts" => Some("[\"…\", \"…\"]"),
+        "a table" => None,
+        _ => Some("1"),
     }
 }

@@ -79,6 +79,7 @@ fn refused(text: &str, findings: Vec<Finding>) -> Parsed {
 
 fn placed(text: &str, mut findings: Vec<Finding>) -> Vec<Complaint> {
     findings.sort_by_key(|finding| finding.span.start);
+    findings.dedup();
     findings.truncate(MOST_COMPLAINTS);
     findings.into_iter().map(|finding| complaint(text, finding)).collect()
 }
@@ -96,8 +97,11 @@ fn too_long() -> Vec<Finding> {
 /// A complaint of the TOML parser in our form.
 fn syntax(text: &str, failure: &toml::de::Error) -> Finding {
     let span = failure.span().unwrap_or(text.len()..text.len());
-    let mend = if failure.message().contains("duplicate key") {
+    let message = failure.message();
+    let mend = if message.contains("duplicate key") {
         "each key stands once in its table: remove or rename one"
+    } else if message.contains("multi-line") {
+        "a text that begins with three quotes ends with the same three"
     } else {
         "a line is a [table], or a key = value: texts in quotes, long texts between ''' and '''"
     };
@@ -105,7 +109,7 @@ fn syntax(text: &str, failure: &toml::de::Error) -> Finding {
         error: true,
         code: "syntax".to_owned(),
         span,
-        message: format!("this is not TOML: {}", failure.message()),
+        message: format!("this is not TOML: {message}"),
         mend: mend.to_owned(),
     }
 }

@@ -7,7 +7,9 @@
 use std::collections::BTreeMap;
 
 use hullward_record::event::{Event, NodeNumber, NodeState};
-use hullward_record::log;
+use hullward_record::{log, wire};
+use proptest::collection::vec;
+use proptest::prelude::*;
 
 const SAVED: &[u8] = include_bytes!("fixtures/log-v1.bin");
 
@@ -52,4 +54,25 @@ fn the_saved_log_tells_a_whole_search() {
     }
     assert!(nodes.values().all(|state| *state != NodeState::Open));
     assert_eq!((best, bound), (OPTIMUM, OPTIMUM));
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig { failure_persistence: None, ..ProptestConfig::default() })]
+
+    #[test]
+    fn a_damaged_log_is_refused_or_read_but_never_a_panic(
+        place in 0..SAVED.len(), byte in any::<u8>(), length in 0..SAVED.len(),
+    ) {
+        let mut bytes = SAVED.to_vec();
+        bytes[place] = byte;
+        let _ = log::decode(&bytes);
+        bytes.truncate(length);
+        prop_assert!(log::decode(&bytes).is_err());
+    }
+
+    #[test]
+    fn random_messages_are_refused_or_read_but_never_a_panic(bytes in vec(any::<u8>(), 0..80)) {
+        let _ = wire::read_request(&bytes);
+        let _ = wire::read_envelope(&bytes);
+    }
 }

@@ -39,6 +39,10 @@
 //! | [`Event`] | what happened, in order |
 //! | [`Search::inspect`] | one node in full |
 //!
+//! **Bounds are true.** Every node's LP is solved to its end, also where its bound passes the
+//! incumbent on the way: each node of the log stands at the bound of its relaxation. A node starts from its
+//! parent's final basis with all rows found so far, and from nothing else.
+//!
 //! **What is trusted.** A node is closed by floating-point arithmetic with the tolerances that
 //! each file names; each leaf is then checked in exact arithmetic and counted as checked or not.
 //! An LP point is a solution only after an exact check of every row and family. A node that

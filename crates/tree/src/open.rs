@@ -74,6 +74,7 @@ fn value(key: u64) -> f64 {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use proptest::prelude::*;
 
     #[test]
     fn keys_keep_the_order_and_the_bits() {
@@ -103,5 +104,14 @@ mod tests {
         let mut open = fill();
         assert_eq!(open.drain(|b| b >= 8.0), vec![NodeId(1), NodeId(4)]);
         assert_eq!((open.len(), open.least()), (2, Some(7.0)));
+    }
+
+    proptest! {
+        #[test]
+        fn keys_compare_as_their_floats(a in any::<f64>(), b in any::<f64>()) {
+            prop_assume!(!a.is_nan() && !b.is_nan());
+            prop_assert_eq!(key(a).cmp(&key(b)), a.partial_cmp(&b).unwrap());
+            prop_assert_eq!(value(key(a)), a);
+        }
     }
 }

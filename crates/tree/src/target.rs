@@ -124,6 +124,7 @@ fn one_or_size(value: f64) -> f64 {
 mod tests {
     use super::*;
     use model::{ColumnSpec, ModelBuilder};
+    use proptest::prelude::*;
 
     fn target(costs: &[Number], integer: bool, offset: Number) -> Target {
         let mut builder = ModelBuilder::new("t", Sense::Minimise);
@@ -173,13 +174,18 @@ mod tests {
         assert_eq!(decimal(f64::NAN), None);
     }
 
-    #[test]
-    fn rounding_goes_to_the_safe_side() {
-        let third = Number::from(1) / Number::from(3);
-        for value in [third.clone(), -third, Number::from(2) / Number::from(3), Number::from(7)] {
+    proptest! {
+        #[test]
+        fn rounding_goes_to_the_safe_side(top in any::<i64>(), bottom in 1..i64::MAX) {
+            let value = Number::from(top) / Number::from(bottom);
             let float = float_below(&value);
-            assert!(Number::try_from(float).unwrap() <= value);
-            assert!(Number::try_from(float.next_up()).unwrap() > value);
+            prop_assert!(Number::try_from(float).unwrap() <= value);
+            prop_assert!(Number::try_from(float.next_up()).unwrap() > value);
+        }
+
+        #[test]
+        fn a_decimal_is_the_nearest_to_its_float(value in -1e12..1e12) {
+            prop_assert_eq!(nearest_f64(&decimal(value).unwrap()), value);
         }
     }
 }

@@ -280,3 +280,56 @@ fn a_family_that_cannot_be_checked_leaves_the_solution_unproved() {
     let why = "not proved: a family over subsets has no exact membership check";
     assert_eq!(summary.stopped.as_deref(), Some(why));
 }
+
+#[test]
+fn a_model_without_columns_has_one_solution() {
+    let mut builder = ModelBuilder::new("t", Sense::Maximise);
+    builder.offset(whole(4));
+    let (_, summary) = run(&Rc::new(builder.build()), &Settings::default(), u64::MAX);
+    assert_eq!((summary.status, summary.incumbent, summary.nodes), (Status::Optimal, Some(4.0), 1));
+    let mut builder = ModelBuilder::new("t", Sense::Minimise);
+    builder.row(&[], row(&[], Some(1), None)).unwrap();
+    let (_, summary) = run(&Rc::new(builder.build()), &Settings::default(), u64::MAX);
+    assert_eq!((summary.status, summary.checked), (Status::Infeasible, true));
+}
+
+#[test]
+fn a_linear_programme_needs_one_node() {
+    let mut builder = ModelBuilder::new("t", Sense::Maximise);
+    let x = builder.column(&[], &spec((0, 9), 2, false)).unwrap();
+    let y = builder.column(&[], &spec((0, 9), 1, false)).unwrap();
+    builder.row(&[], row(&[(x, 3), (y, 1)], None, Some(10))).unwrap();
+    let (_, summary) = run(&Rc::new(builder.build()), &Settings::default(), u64::MAX);
+    assert_eq!((summary.status, summary.nodes, summary.checked), (Status::Optimal, 1, true));
+    assert!((summary.incumbent.unwrap() - 29.0 / 3.0).abs() < 1e-9);
+}
+
+#[test]
+fn without_costs_any_solution_will_do() {
+    let mut builder = ModelBuilder::new("t", Sense::Minimise);
+    let columns: Vec<_> =
+        (0..6).map(|_| builder.column(&[], &spec((0, 1), 0, true)).unwrap()).collect();
+    let entries: Vec<_> = columns.iter().zip([3, 5, 7, 11, 13, 17]).map(|(&c, a)| (c, a)).collect();
+    builder.row(&[], row(&entries, Some(29), Some(29))).unwrap();
+    let model = Rc::new(builder.build());
+    for settings in rules() {
+        let (_, summary) = run(&model, &settings, u64::MAX);
+        assert_eq!((summary.status, summary.incumbent), (Status::Optimal, Some(0.0)));
+        assert!(summary.checked, "{summary:?}");
+    }
+}
+
+#[test]
+fn a_column_without_a_whole_value_is_infeasible() {
+    let half = |n: i64| Some(whole(n) / whole(4));
+    let mut builder = ModelBuilder::new("t", Sense::Minimise);
+    let narrow = ColumnSpec { lower: half(1), upper: half(3), cost: whole(1), integer: true };
+    builder.column(&[], &narrow).unwrap();
+    let (_, summary) = run(&Rc::new(builder.build()), &Settings::default(), u64::MAX);
+    assert_eq!((summary.status, summary.nodes), (Status::Infeasible, 3));
+    assert!(summary.checked);
+    let mut builder = ModelBuilder::new("t", Sense::Minimise);
+    builder.column(&[], &spec((2, 1), 1, true)).unwrap();
+    let (_, summary) = run(&Rc::new(builder.build()), &Settings::default(), u64::MAX);
+    assert_eq!((summary.status, summary.nodes, summary.checked), (Status::Infeasible, 1, true));
+}

@@ -44,9 +44,11 @@
       if (host === null) {
         wasm_bindgen.initSync({ module: data });
         host = new wasm_bindgen.Host();
-      } else {
+      } else if (data instanceof Uint8Array) {
         host.receive(data);
         plan();
+      } else {
+        throw new TypeError("a request is bytes");
       }
     });
 })();

@@ -2,8 +2,9 @@
 
 use std::rc::Rc;
 
+use record::file::{looks_like_a_scenario, parse};
 use record::message::{CatalogueEntry, InstanceReport};
-use record::scenario::{FamilyState, InstanceText, Rival, Run, Scenario, letter};
+use record::scenario::{FamilyState, InstanceText, Rival, Role, Run, Scenario, letter};
 use yew::Reducible;
 
 use crate::state::lane::LaneId;
@@ -51,6 +52,8 @@ pub(crate) struct Document {
     pub(crate) run: Shared<Run>,
     /// The text in the box.
     pub(crate) draft: Shared<InstanceText>,
+    /// Whether a person chose the reader.
+    reader_chosen: bool,
     /// What was read of the text in the box; `None` while it is being read.
     pub(crate) reading: Option<Shared<InstanceReport>>,
     /// The last text that could be used, which the rivals run on.
@@ -86,8 +89,14 @@ pub(crate) enum DocumentAction {
 impl Document {
     /// The document of a scenario.
     pub(crate) fn open(scenario: Scenario) -> Self {
+        Self::open_after(scenario, 1, Shared::new(Vec::new()))
+    }
+
+    /// The document of a scenario whose lanes are numbered from `next`.
+    fn open_after(scenario: Scenario, next: u32, catalogue: Shared<Vec<CatalogueEntry>>) -> Self {
         let mut document = Self {
             titled: false,
+            reader_chosen: false,
             title: scenario.title,
             seed: scenario.seed,
             run: Shared::new(scenario.run),
@@ -95,8 +104,8 @@ impl Document {
             reading: None,
             accepted: None,
             slots: Vec::new(),
-            catalogue: Shared::new(Vec::new()),
-            next: 1,
+            catalogue,
+            next,
         };
         for rival in scenario.rivals {
             document.push(rival);
@@ -117,6 +126,15 @@ impl Document {
         let id = rival.from.as_deref().unwrap_or("own formulation");
         let entry = self.catalogue.iter().find(|entry| entry.id == id);
         entry.map_or_else(|| id.to_owned(), |entry| entry.title.clone())
+    }
+
+    /// Whether a rival is known to be no more than a relaxation, so that its best solution need
+    /// not be one of the problem.
+    pub(crate) fn is_relaxation(&self, rival: &Rival) -> bool {
+        let entry = self.catalogue.iter().find(|entry| rival.from.as_ref() == Some(&entry.id));
+        rival.role == Some(Role::Relaxation)
+            || entry.is_some_and(|entry| entry.relaxation)
+            || rival.families.values().any(|&state| state == FamilyState::Out)
     }
 
     fn push(&mut self, rival: Rival) {
@@ -152,6 +170,20 @@ impl Document {
     }
 }
 
+/// The scenario that a text holds, if it is one without an error.
+fn scenario(text: &str) -> Option<Scenario> {
+    looks_like_a_scenario(text).then(|| parse(text).scenario).flatten()
+}
+
+/// What is wrong with a text that is meant as a scenario; `None` for any other text.
+pub(crate) fn broken_scenario(text: &str) -> Option<InstanceReport> {
+    looks_like_a_scenario(text).then(|| InstanceReport {
+        facts: vec!["This is a scenario file that cannot be opened as it is.".to_owned()],
+        complaints: parse(text).complaints,
+        ..InstanceReport::default()
+    })
+}
+
 impl Reducible for Document {
     type Action = DocumentAction;
 
@@ -166,10 +198,12 @@ impl Reducible for Document {
                 if text == document.draft.text {
                     return self;
                 }
-                let reader = document.draft.reader.clone();
+                let changed = !is_another(&document.draft.text, &text);
+                let reader = document.draft.reader.clone().filter(|_| changed);
                 document.draft(InstanceText { reader, text, ..InstanceText::default() });
             }
             DocumentAction::Reader(reader) => {
+                document.reader_chosen = reader.is_some();
                 document.draft(InstanceText { reader, ..(*document.draft).clone() });
             }
             DocumentAction::Read(text, report) => {
@@ -187,6 +221,14 @@ impl Reducible for Document {
         }
         document.into()
     }
+}
+
+/// Whether a text stands in place of the old one instead of changing it: then the reader that was
+/// right for the old one may be wrong.
+fn is_another(old: &str, new: &str) -> bool {
+    !old.is_empty()
+        && old.chars().next() != new.chars().next()
+        && old.trim_end().chars().next_back() != new.trim_end().chars().next_back()
 }
 
 #[cfg(test)]
@@ -224,6 +266,15 @@ mod tests {
     }
 
     #[test]
+    fn a_chosen_reader_outlives_changes_but_not_another_text() {
+        let chosen = document().reduce(DocumentAction::Reader(Some("matrix".to_owned())));
+        let changed = chosen.reduce(DocumentAction::Text("0 3\n1 0".to_owned()));
+        assert_eq!(changed.draft.reader.as_deref(), Some("matrix"));
+        let another = changed.reduce(DocumentAction::Text("A 3 4\nB 1 2".to_owned()));
+        assert_eq!(another.draft.reader, None);
+    }
+
+    #[test]
     fn a_reading_of_an_older_text_is_dropped() {
         let first = document();
         let old = first.draft.clone();
@@ -243,6 +294,40 @@ mod tests {
         let third =
             read(titled.reduce(DocumentAction::Text("0 3\n3 0".to_owned())), usable("other"));
         assert_eq!(third.title, "Mine");
+    }
+
+    #[test]
+    fn a_pasted_scenario_is_opened_in_lanes_of_its_own() {
+        let text = "hullward = 1\ntitle = \"Other\"\n[instance]\ntext = \"0 1\\n1 0\"\n\
+                    [[rival]]\nfrom = \"atsp/cuts\"\n";
+        let opened = document().reduce(DocumentAction::Text(text.to_owned()));
+        assert_eq!((opened.title.as_str(), opened.draft.text.as_str()), ("Other", "0 1\n1 0"));
+        assert_eq!(opened.slots.iter().map(|slot| slot.id).collect::<Vec<_>>(), [LaneId(3)]);
+        let broken = document().reduce(DocumentAction::Text("hullward = 1\ntitel = 2".to_owned()));
+        assert_eq!(broken.slots.len(), 2);
+        assert!(!broken_scenario(&broken.draft.text).unwrap().complaints.is_empty());
+        assert!(broken_scenario("0 1\n1 0").is_none());
+    }
+
+    #[test]
+    fn a_reader_that_nobody_chose_does_not_outlive_its_text() {
+        let read = |document: Rc<Document>| {
+            document.reduce(DocumentAction::Text("NAME: x".to_owned())).draft.reader.clone()
+        };
+        let mut given = (*document()).clone();
+        given.draft(InstanceText { reader: Some("matrix".to_owned()), ..InstanceText::default() });
+        assert_eq!(read(Rc::new(given)), None);
+        let chosen = document().reduce(DocumentAction::Reader(Some("points".to_owned())));
+        assert_eq!(read(chosen), Some("points".to_owned()));
+    }
+
+    #[test]
+    fn a_rival_without_one_of_its_families_is_a_relaxation() {
+        let document = document();
+        let rival = (*document.slots[0].rival).clone();
+        assert!(!document.is_relaxation(&rival));
+        let families = [("order".to_owned(), FamilyState::Out)].into();
+        assert!(document.is_relaxation(&Rival { families, ..rival }));
     }
 
     #[test]

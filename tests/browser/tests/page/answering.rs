@@ -4,7 +4,7 @@ use hullward_tests_browser::Outcome;
 use hullward_tests_browser::visit::{Source, visit};
 use serde_json::json;
 
-use crate::lanes::{button, part, status};
+use crate::lanes::{button, part, paste_long_work, status};
 
 /// Milliseconds from a click on Stop to the lane's saying that it has stopped.
 const STOP: &str = "
@@ -29,7 +29,7 @@ const WATCH_TASKS: &str = "
 #[tokio::test(flavor = "multi_thread")]
 async fn stop_acts_within_a_tenth_of_a_second() -> Outcome<()> {
     visit(Source::File, async |browser| {
-        status(browser, "A", "root solved").await?;
+        paste_long_work(browser).await?;
         button(browser, "A", "run").await?.click().await?;
         status(browser, "A", "searching").await?;
         let places = vec![json!(part("A", "stop")), json!(part("A", "status"))];
@@ -43,9 +43,7 @@ async fn stop_acts_within_a_tenth_of_a_second() -> Outcome<()> {
 #[tokio::test(flavor = "multi_thread")]
 async fn no_task_of_the_page_is_long_while_a_tree_grows() -> Outcome<()> {
     visit(Source::File, async |browser| {
-        for letter in ["A", "B", "C"] {
-            status(browser, letter, "root solved").await?;
-        }
+        paste_long_work(browser).await?;
         browser.script(WATCH_TASKS).await?;
         button(browser, "A", "run").await?.click().await?;
         tokio::time::sleep(std::time::Duration::from_secs(3)).await;

@@ -45,6 +45,28 @@ pub(crate) async fn paste(browser: &Browser, text: &str) -> Outcome<()> {
     browser.paste(&field, text).await
 }
 
+/// Pastes a round of so many scattered stops that its labels are searched for long, and waits for
+/// its roots.
+pub(crate) async fn paste_long_work(browser: &Browser) -> Outcome<()> {
+    paste(browser, &scattered(30)).await?;
+    browser.shows("30 stops, 870 drives").await?;
+    for letter in ["A", "B", "C"] {
+        status(browser, letter, "root solved").await?;
+    }
+    Ok(())
+}
+
+/// Points scattered by a linear congruential generator (Knuth's MMIX multiplier).
+fn scattered(stops: u32) -> String {
+    let mut state: u64 = 2026;
+    let mut next = || {
+        state =
+            state.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
+        (state >> 33) % 1000
+    };
+    (1..=stops).map(|stop| format!("S{stop} {} {}\n", next(), next())).collect()
+}
+
 /// The length of a shortest round, by trying every order. `None` stands for no drive.
 pub(crate) fn shortest(matrix: &[Vec<Option<f64>>]) -> Option<f64> {
     let mut left: Vec<usize> = (1..matrix.len()).collect();

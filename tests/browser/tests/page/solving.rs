@@ -3,7 +3,7 @@
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::visit::{Source, visit};
 
-use crate::lanes::{button, paste, shortest, status, text, value};
+use crate::lanes::{button, paste, paste_long_work, shortest, status, text, value};
 
 const TSPLIB: &str = include_str!("../../fixtures/eight-stops.atsp");
 
@@ -41,7 +41,7 @@ async fn a_pasted_file_is_solved_to_optimality_by_every_rival() -> Outcome<()> {
     visit(Source::Server, async |browser| {
         let expected = shortest(&matrix()).unwrap_or(f64::NAN);
         paste(browser, TSPLIB).await?;
-        browser.shows("8 stops").await?;
+        browser.shows("8 stops, 56 drives").await?;
         for letter in ["A", "B", "C"] {
             status(browser, letter, "root solved").await?;
         }
@@ -61,7 +61,7 @@ async fn a_pasted_file_is_solved_to_optimality_by_every_rival() -> Outcome<()> {
 #[tokio::test(flavor = "multi_thread")]
 async fn a_search_pauses_steps_and_goes_on() -> Outcome<()> {
     visit(Source::File, async |browser| {
-        status(browser, "A", "root solved").await?;
+        paste_long_work(browser).await?;
         button(browser, "A", "step").await?.click().await?;
         status(browser, "A", "paused").await?;
         button(browser, "A", "run").await?.click().await?;

@@ -6,7 +6,7 @@ use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::visit::{Source, visit};
 
-use crate::lanes::{button, status, text};
+use crate::lanes::{button, paste_long_work, status, text};
 
 /// Makes the page's later workers known to the test.
 const KEEP_WORKERS: &str = "
@@ -19,8 +19,9 @@ const KEEP_WORKERS: &str = "
 
 /// Adds a rival and runs it, so that its worker is known, and waits until it searches.
 async fn running_lane(browser: &Browser) -> Outcome<()> {
-    status(browser, "A", "root solved").await?;
+    paste_long_work(browser).await?;
     browser.script(KEEP_WORKERS).await?;
+    browser.select("[data-testid=catalogue]").await?.select_by_value("atsp/labels").await?;
     browser.find("button", "Add").await?.click().await?;
     status(browser, "D", "root solved").await?;
     button(browser, "D", "run").await?.click().await?;

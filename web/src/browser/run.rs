@@ -33,7 +33,7 @@ pub(crate) struct LaneRun {
     pub(crate) inbox: VecDeque<Envelope>,
     /// Runs out when Stop is not answered.
     pub(crate) watchdog: Option<Timeout>,
-    /// Nodes to search again after the worker was replaced.
+    /// Nodes to search again below the root after the worker was replaced.
     pub(crate) replay: Option<u32>,
     /// Whether the root is solved: after that a request may fail, but not the rival.
     rooted: bool,

@@ -250,8 +250,8 @@ impl Session {
                 vec![LaneAction::Failed(error(why))]
             } else {
                 lane.worker = self.lane_worker(id);
-                let nodes = lane.tree.borrow().tally().solved.saturating_sub(1);
-                lane.replay = Some(nodes);
+                let nodes = lane.tree.borrow().tally().solved;
+                lane.replay = Some(nodes.saturating_sub(1));
                 vec![LaneAction::Notice(replaced(why, nodes)), lane.load()]
             }
         };

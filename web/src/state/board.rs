@@ -107,9 +107,10 @@ impl Board {
         self.lanes.get(&id).cloned().unwrap_or_else(|| Shared::new(Lane::default()))
     }
 
-    /// The best solution's value over all lanes that are rivals for the optimum.
-    pub(crate) fn best(&self) -> Option<f64> {
-        let values = self.lanes.values().filter_map(|lane| lane.incumbent());
+    /// The best solution's value over the lanes that are rivals for the optimum.
+    pub(crate) fn best(&self, rival: impl Fn(LaneId) -> bool) -> Option<f64> {
+        let rivals = self.lanes.iter().filter(|(id, _)| rival(**id));
+        let values = rivals.filter_map(|(_, lane)| lane.incumbent());
         values.reduce(|one, other| if self.is_better(other, one) { other } else { one })
     }
 
@@ -284,7 +285,8 @@ mod tests {
         let grown = |value| LaneAction::Grown(Tally { incumbent: Some(value), ..Tally::default() });
         let board = reduce(board, BoardAction::Lane(LaneId(1), grown(160.0)));
         let board = reduce(board, BoardAction::Lane(LaneId(2), grown(153.0)));
-        assert_eq!(board.best(), Some(153.0));
+        assert_eq!(board.best(|_| true), Some(153.0));
+        assert_eq!(board.best(|id| id == LaneId(1)), Some(160.0));
     }
 
     #[test]

@@ -198,8 +198,11 @@ impl Reducible for Document {
                 if text == document.draft.text {
                     return self;
                 }
-                let changed = !is_another(&document.draft.text, &text);
-                let reader = document.draft.reader.clone().filter(|_| changed);
+                if let Some(scenario) = scenario(&text) {
+                    let (next, catalogue) = (document.next, document.catalogue.clone());
+                    return Self::open_after(scenario, next, catalogue).into();
+                }
+                let reader = document.draft.reader.clone().filter(|_| document.reader_chosen);
                 document.draft(InstanceText { reader, text, ..InstanceText::default() });
             }
             DocumentAction::Reader(reader) => {

@@ -68,7 +68,11 @@ fn ended(search: &SearchReport, nodes: &str) -> String {
         Status::Infeasible => format!("closed: no solution exists, {nodes}"),
         Status::Unbounded => "the objective has no bound".to_owned(),
         Status::Limit => {
-            let why = search.stopped.as_deref().unwrap_or("a limit");
+            let why = match search.stopped.as_deref() {
+                Some("stopped") => "by hand",
+                Some(why) => why,
+                None => "a limit",
+            };
             format!(
                 "stopped ({why}): {nodes}, {} open",
                 report::number::count(u64::from(search.open))
@@ -76,6 +80,12 @@ fn ended(search: &SearchReport, nodes: &str) -> String {
         }
         Status::Error => "the search failed".to_owned(),
     }
+}
+
+/// A clause with a stop at its end.
+pub(crate) fn sentence(clause: &str) -> String {
+    let ended = clause.is_empty() || clause.ends_with(['.', '!', '?']);
+    if ended { clause.to_owned() } else { [clause, "."].concat() }
 }
 
 /// The state of a node in a word or two.
@@ -168,6 +178,11 @@ mod tests {
             "x[Ash → Birch] ≥ 1"
         );
         assert_eq!(branching(&step, &[]), "? ≥ 1");
+    }
+
+    #[test]
+    fn a_clause_becomes_a_sentence_once() {
+        assert_eq!((sentence("x").as_str(), sentence("x.").as_str()), ("x.", "x."));
     }
 
     #[test]

@@ -7,6 +7,7 @@ use web_sys::HtmlTextAreaElement;
 use yew::prelude::*;
 
 use crate::state::pointer::Shared;
+use crate::state::words::sentence;
 use crate::view::paste::BOX;
 
 /// Complaints shown at once.
@@ -68,7 +69,7 @@ fn one(text: &str, complaint: &Complaint) -> Html {
     html! {
         <>
             <p>
-                <b>{ place }</b>{ complaint.message.clone() }
+                <b>{ place }</b>{ sentence(&complaint.message) }
                 if !complaint.mend.is_empty() { { " " }<span class="mend">{ complaint.mend.clone() }</span> }
                 { " " }<button type="button" class="link" onclick={show}>{ "Show in the text" }</button>
             </p>

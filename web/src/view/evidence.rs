@@ -51,6 +51,7 @@ fn row(document: &Document, board: &Board, place: usize, slot: &Slot, best: Opti
         lane.rival.as_ref().map_or_else(|| "–".to_owned(), |rival| count(u64::from(of(rival))))
     };
     let open = if lane.nodes() > 0 && !is_over(&lane) { "+" } else { "" };
+    let relaxation = document.is_relaxation(&slot.rival);
     let checked = match &lane.root {
         Some(root) if root.checked => "yes",
         Some(_) => "no",
@@ -65,7 +66,7 @@ fn row(document: &Document, board: &Board, place: usize, slot: &Slot, best: Opti
             <td>{ share(gap(best, lane.root_bound())) }</td>
             <td>{ count(u64::from(lane.nodes())) }{ open }</td>
             <td>{ figure(lane.bound()) }</td>
-            <td>{ figure(lane.incumbent()) }</td>
+            <td>{ if relaxation { html! { <span class="soft">{ "a relaxation" }</span> } } else { figure(lane.incumbent()) } }</td>
             <td>{ checked }</td>
         </tr>
     }

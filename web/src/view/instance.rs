@@ -3,7 +3,7 @@
 use gloo_timers::callback::Timeout;
 use yew::prelude::*;
 
-use crate::state::document::Document;
+use crate::state::document::{Document, DocumentAction, broken_scenario};
 use crate::state::pointer::Shared;
 use crate::view::complaints::Complaints;
 use crate::view::grid::Grid;
@@ -28,8 +28,10 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
         let rest = if std::mem::take(&mut *first.borrow_mut()) { 0 } else { REST };
         let draft = draft.clone();
         let timer = Timeout::new(rest, move || {
-            if let Some(hands) = hands {
-                hands.session.read(draft);
+            let Some(hands) = hands else { return };
+            match broken_scenario(&draft.text) {
+                Some(report) => hands.document.dispatch(DocumentAction::Read(draft, report)),
+                None => hands.session.read(draft),
             }
         });
         move || drop(timer)

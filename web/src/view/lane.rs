@@ -13,7 +13,7 @@ use crate::state::board::{BoardAction, Selection};
 use crate::state::document::{DocumentAction, Slot};
 use crate::state::lane::{Lane, Phase};
 use crate::state::pointer::Shared;
-use crate::state::words::status;
+use crate::state::words::{sentence, status};
 use crate::view::canvas::TreeCanvas;
 use crate::view::families::Families;
 use crate::view::figure::{figure, gap, share};
@@ -32,6 +32,7 @@ pub(crate) struct LaneProps {
     pub(crate) letter: String,
     pub(crate) hue: usize,
     pub(crate) title: String,
+    pub(crate) relaxation: bool,
     pub(crate) lane: Shared<Lane>,
     pub(crate) text: Option<Shared<InstanceText>>,
     pub(crate) run: Shared<Run>,
@@ -57,6 +58,9 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 if let Some(rival) = &props.lane.rival {
                     <p class="small soft" data-testid="size" title={of(rival.nonzeros, "coefficient")}>{ size(rival) }</p>
                     <Families slot={props.slot.clone()} rival={rival.clone()} />
+                }
+                if props.relaxation {
+                    <p class="small soft">{ "A relaxation: bounded, not compared for its optimum." }</p>
                 }
                 { figures(props) }
                 <p class="small" data-testid="status">{ status(&props.lane) }</p>
@@ -165,12 +169,12 @@ fn figures(props: &LaneProps) -> Html {
 fn failure(error: &ErrorReport) -> Html {
     html! {
         <div class="complaints small" data-testid="failure">
-            <p><b>{ "Not run: " }</b>{ error.message.clone() }</p>
+            <p><b>{ "Not run: " }</b>{ sentence(&error.message) }</p>
             if !error.complaints.is_empty() {
                 <ul>
                     for complaint in error.complaints.iter().take(6) {
                         <li>
-                            { format!("{} line {}: {}", error.place, complaint.line, complaint.message) }
+                            { format!("{} line {}: {}", error.place, complaint.line, sentence(&complaint.message)) }
                             if !complaint.mend.is_empty() { { " " }<span class="mend">{ complaint.mend.clone() }</span> }
                         </li>
                     }

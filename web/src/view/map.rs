@@ -5,7 +5,7 @@
 use record::message::{Arc, InstanceReport};
 use report::labels::{Placed, Wish, place};
 use report::map::{Curve, Frame, Point, fit, hull};
-use report::number::short;
+use report::number::fixed;
 use yew::prelude::*;
 
 use crate::browser::size::use_width;
@@ -134,7 +134,7 @@ fn chosen(props: &MapProps, places: &Places) -> Html {
         return Html::default();
     };
     let (x, y) = curve.at(0.5);
-    html! { <text class="name value" x={px(x)} y={px(y - 6.0)} text-anchor="middle">{ short(arc.value) }</text> }
+    html! { <text class="name value" x={px(x)} y={px(y - 6.0)} text-anchor="middle">{ fixed(arc.value, 3) }</text> }
 }
 
 fn tinted(props: &MapProps, places: &Places) -> Html {

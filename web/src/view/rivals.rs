@@ -51,6 +51,7 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
                 <LaneView
                     key={slot.id.0} slot={slot.clone()} letter={Document::letter(place)}
                     hue={place % HUES} title={document.rival_title(&slot.rival)}
+                    relaxation={document.is_relaxation(&slot.rival)}
                     lane={board.lane(slot.id)} run={document.run.clone()} seed={document.seed}
                     text={document.accepted.as_ref().map(|accepted| accepted.text.clone())}
                     {axis} {width} best={best.as_ref().map(|best| best.value)}
@@ -75,7 +76,11 @@ fn heading(document: &Document) -> String {
 /// The best known value: the best of all lanes, or the one the scenario gives.
 fn best(document: &Document, board: &Board) -> Option<Best> {
     let given = document.run.best_known;
-    let found = board.best();
+    let rival = |id| {
+        let slot = document.slots.iter().find(|slot| slot.id == id);
+        slot.is_some_and(|slot| !document.is_relaxation(&slot.rival))
+    };
+    let found = board.best(rival);
     match (found, given) {
         (Some(found), Some(given)) if found != given && board.is_better(given, found) => {
             Some(Best { value: given, whose: "given".to_owned() })
@@ -100,7 +105,8 @@ fn finders(document: &Document, board: &Board, value: f64) -> String {
             .enumerate()
             .filter(|(_, slot)| {
                 let lane = board.lane(slot.id);
-                wanted(&lane) && lane.incumbent().map(short) == Some(short(value))
+                let counts = wanted(&lane) && !document.is_relaxation(&slot.rival);
+                counts && lane.incumbent().map(short) == Some(short(value))
             })
             .map(|(place, _)| Document::letter(place))
             .collect();

@@ -87,12 +87,12 @@ fn List(props: &TwinProps) -> Html {
     let top = use_state_eq(|| 0_usize);
     let key = (props.tree.clone(), props.version, (*folded).clone());
     let rows = use_memo(key, |(tree, _, folded)| rows(&tree.borrow(), folded));
-    let first = top.saturating_sub(SPARE);
-    let last = (*top + VIEW + SPARE).min(rows.len());
+    let first = top.saturating_sub(SPARE).min(rows.len());
+    let last = (*top + VIEW + SPARE).clamp(first, rows.len());
     {
         let frame = frame.clone();
-        use_effect_with((first, rows.len()), move |&(first, count)| {
-            stretch(&frame, first, count);
+        use_effect_with((first, rows.len() - last), move |&(before, after)| {
+            stretch(&frame, before, after);
         });
     }
     let onscroll = {
@@ -122,9 +122,8 @@ fn List(props: &TwinProps) -> Html {
             }
         })
     };
-    let active = props
-        .selected
-        .filter(|place| rows[first.min(last)..last].iter().any(|row| row.place == *place));
+    let active =
+        props.selected.filter(|place| rows[first..last].iter().any(|row| row.place == *place));
     let tree = props.tree.borrow();
     html! {
         <div
@@ -133,7 +132,7 @@ fn List(props: &TwinProps) -> Html {
             aria-activedescendant={active.map(|place| row_id(&props.letter, place))}
         >
             <div class="before" role="none" />
-            for row in rows[first.min(last)..last].iter() { { item(props, &tree, &folded, *row) } }
+            for row in rows[first..last].iter() { { item(props, &tree, &folded, *row) } }
             <div class="after" role="none" />
         </div>
     }
@@ -212,11 +211,9 @@ fn step(
 }
 
 /// Gives the two spacers the height of the rows that are not in the document.
-fn stretch(frame: &NodeRef, first: usize, count: usize) {
+fn stretch(frame: &NodeRef, before: usize, after: usize) {
     let Some(frame) = frame.cast::<HtmlElement>() else { return };
-    let shown = (count.saturating_sub(first)).min(VIEW + 2 * SPARE);
-    let after = count.saturating_sub(first + shown);
-    for (class, rows) in [(".before", first), (".after", after)] {
+    for (class, rows) in [(".before", before), (".after", after)] {
         let spacer = frame.query_selector(class).ok().flatten();
         if let Some(spacer) = spacer.and_then(|spacer| spacer.dyn_into::<HtmlElement>().ok()) {
             let height = [(rows * ROW as usize).to_string().as_str(), "px"].concat();

@@ -19,11 +19,13 @@
 //! | [`ModelBuilder`] | writing: notation's expansion and the readers |
 //! | [`Row`] | one exact row outside the model: a separated member of a family |
 //! | [`Statistics`] | size and coefficient ranges |
+//! | [`mps`] | models of others, and models for others |
 
 mod builder;
 mod id;
 mod labels;
 mod model;
+pub mod mps;
 mod number;
 mod statistics;
 mod subset;

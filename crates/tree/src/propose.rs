@@ -13,6 +13,43 @@ use crate::target::signed;
 /// How near to the cut-off the first solution may be; relative to 1 + its size.
 const NEAR: f64 = 1e-9;
 
+/// The longest pause between two roundings that are completed, as a power of two.
+const LONGEST_PAUSE: u32 = 8;
+
+/// Which roundings are tried: none twice in a row, and those that need an LP ever more rarely
+/// while they fail (after k failures in a row the next 2ᵏ − 1 are left out).
+#[derive(Debug, Default)]
+pub(crate) struct Roundings {
+    last: Vec<f64>,
+    failures: u32,
+    pause: u32,
+}
+
+impl Roundings {
+    /// Whether this one differs from the last, which it then becomes.
+    fn is_new(&mut self, rounded: &[f64]) -> bool {
+        let new = self.last != rounded;
+        if new {
+            self.last.clear();
+            self.last.extend_from_slice(rounded);
+        }
+        new
+    }
+
+    /// Whether one may be completed now.
+    fn may_complete(&mut self) -> bool {
+        let now = self.pause == 0;
+        self.pause = self.pause.saturating_sub(1);
+        now
+    }
+
+    /// Notes how a completion ended.
+    fn note(&mut self, found: bool) {
+        self.failures = if found { 0 } else { (self.failures + 1).min(LONGEST_PAUSE) };
+        self.pause = (1 << self.failures) - 1;
+    }
+}
+
 impl Search {
     /// The point in hand has no fraction: checks whether it is a solution.
     pub(crate) fn propose(&mut self) -> Option<Progress> {
@@ -34,7 +71,7 @@ impl Search {
     /// anything.
     pub(crate) fn round(&mut self, x: &[f64]) -> Option<Progress> {
         let rounded = self.checker.rounded(x);
-        if rounded == self.last_rounding {
+        if !self.roundings.is_new(&rounded) {
             return self.proceed();
         }
         let best = self.target.best();
@@ -42,12 +79,14 @@ impl Search {
         let found = self.incumbent.is_some();
         let promising =
             self.checker.promising(&rounded, |value| wanted(direction * value, best, found));
-        self.last_rounding.clone_from(&rounded);
         if !promising {
             return self.proceed();
         }
         if self.checker.has_continuous() {
-            return self.complete(&rounded, Purpose::Rounding);
+            if self.roundings.may_complete() {
+                return self.complete(&rounded, Purpose::Rounding);
+            }
+            return self.proceed();
         }
         match self.checker.check(self.rounds.separators(), &rounded) {
             Verdict::Solution(solution) => self.take(solution, Purpose::Rounding),
@@ -97,6 +136,9 @@ impl Search {
     ) -> Option<Progress> {
         self.job = Job::None;
         let verdict = point.map(|x| self.checker.check(self.rounds.separators(), x));
+        if purpose == Purpose::Rounding {
+            self.roundings.note(matches!(verdict, Some(Verdict::Solution(_))));
+        }
         match verdict {
             Some(Verdict::Solution(solution)) => self.take(solution, purpose),
             _ => self.proceed(),
@@ -146,4 +188,32 @@ fn wanted(value: f64, best: Option<f64>, found: bool) -> bool {
     best.is_none_or(
         |best| if found { value < best } else { value <= best + NEAR * (1.0 + best.abs()) },
     )
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn failures_make_the_pauses_longer_and_a_find_ends_them() {
+        let mut roundings = Roundings::default();
+        let mut tried = Vec::new();
+        for node in 0..40 {
+            if roundings.may_complete() {
+                tried.push(node);
+                roundings.note(false);
+            }
+        }
+        assert_eq!(tried, vec![0, 2, 6, 14, 30]);
+        roundings.note(true);
+        assert!(roundings.may_complete() && roundings.may_complete());
+        assert!(roundings.is_new(&[1.0]) && !roundings.is_new(&[1.0]) && roundings.is_new(&[2.0]));
+    }
+
+    #[test]
+    fn the_first_solution_may_equal_the_cutoff_and_later_ones_must_be_better() {
+        assert!(wanted(9.0, None, false));
+        assert!(wanted(9.0, Some(9.0), false) && !wanted(9.1, Some(9.0), false));
+        assert!(!wanted(9.0, Some(9.0), true) && wanted(8.9, Some(9.0), true));
+    }
 }

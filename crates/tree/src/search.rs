@@ -13,6 +13,7 @@ use crate::branching::{Choice, Chooser};
 use crate::event::{Event, NodeId, Origin};
 use crate::node::Tree;
 use crate::open::Open;
+use crate::propose::Roundings;
 use crate::relaxation::{Relaxation, direction};
 use crate::root::RootResult;
 use crate::round_trip::RoundTrip;
@@ -176,7 +177,7 @@ pub struct Search {
     pub(crate) state: State,
     pub(crate) quota: Option<u32>,
     pub(crate) paused: bool,
-    pub(crate) last_rounding: Vec<f64>,
+    pub(crate) roundings: Roundings,
     pub(crate) ledger: Ledger,
     pub(crate) events: Vec<Event>,
 }
@@ -208,7 +209,7 @@ impl Search {
             state: State::Root,
             quota: None,
             paused: false,
-            last_rounding: Vec::new(),
+            roundings: Roundings::default(),
             ledger: Ledger::default(),
             events: vec![Event::Created { node: NodeId::ROOT, parent: None, branching: None }],
             relaxation: None,

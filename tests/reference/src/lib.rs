@@ -10,6 +10,7 @@
 pub mod golden;
 pub mod independent;
 pub mod round_trip;
+pub mod theory;
 
 use std::path::PathBuf;
 

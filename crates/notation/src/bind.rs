@@ -65,6 +65,7 @@ struct Binder<'i> {
 impl<'i> Binder<'i> {
     fn symbol(&mut self, id: SymbolId) {
         let plan = Rc::clone(&self.evaluator.plan);
+        self.evaluator.start_work();
         let symbol = &plan.symbols[id];
         let datum = if symbol.datum { self.supplied(symbol) } else { None };
         let lacks = symbol.datum && datum.is_none() && symbol.value.is_none();
@@ -82,6 +83,7 @@ impl<'i> Binder<'i> {
         match values {
             Ok(values) => self.evaluator.values[id] = Some(values),
             Err(diagnostic) => {
+                let diagnostic = crate::evaluate::placed(diagnostic, symbol.span);
                 // what it needs lacks: that has been said
                 if self.errors.is_empty() || diagnostic.code != message::UNAVAILABLE {
                     self.errors.push(*diagnostic);

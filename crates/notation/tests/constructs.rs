@@ -110,6 +110,11 @@ fn missing_sets_are_told_from_the_carrier() {
     let found = rows(data, "", "  x_{ij} ∈ {0,1} ∀ (i,j) ∈ A\n  Σ_i Σ_j c_{ij} x_{ij} ≥ 1 (rows)");
     assert_eq!(found[0].matches("x[").count(), 20);
     assert_eq!(rows("", "", "  z_i ≤ 1 ∀ i (rows)").len(), 5);
+    let lines = "  x_{ij} ∈ {0,1} ∀ (i,j) ∈ A\n  \\sum_{ij} c_{ij} x_{ij} ≥ 1 (rows)";
+    assert_eq!(rows(data, "", lines), found);
+    let pairs = rows("", "", "  z_i + z_j ≤ 1, i ≠ j ∈ V (rows)");
+    assert_eq!(pairs.len(), 20);
+    assert_eq!(pairs, rows("", "", "  z_i + z_j ≤ 1 ∀ i, j ∈ V : i ≠ j (rows)"));
 }
 
 #[test]

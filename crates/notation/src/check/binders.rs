@@ -6,6 +6,9 @@ use crate::place::Span;
 use crate::plan::{Node, Pattern, Root, Step, SubsetPlan};
 use crate::syntax::{Clause, Expression, Kind, Name, Relation};
 
+/// The most indices that are bound on one line, and places that a tuple may have.
+const INDEX_LIMIT: usize = 24;
+
 /// The work on one quantifier.
 pub(super) struct Quantifier<'e> {
     pub(super) steps: Vec<Step>,
@@ -62,6 +65,9 @@ impl Checker<'_> {
     }
 
     fn item(&mut self, item: &Expression, work: &mut Quantifier<'_>) -> Option<()> {
+        if self.locals.len() + work.pending.len() > INDEX_LIMIT {
+            return self.report(crate::diagnostic::size::indices(INDEX_LIMIT, item.span));
+        }
         match &item.kind {
             Kind::Name(name) if self.is_new(name, work) => {
                 work.pending.push((name.text.clone(), item.span));
@@ -111,6 +117,14 @@ impl Checker<'_> {
         let binder = (0..links.len()).find(|&k| binds(k));
         if let Some(k) = binder {
             if links[k].0 == Relation::In {
+                // i ≠ j ∈ V: all of them are from V
+                let before: Vec<&Name> =
+                    operands[..k].iter().filter_map(|o| self.new_name(o, work)).collect();
+                let fresh =
+                    before.into_iter().filter(|n| !work.pending.iter().any(|(p, _)| *p == n.text));
+                let fresh: Vec<(String, Span)> =
+                    fresh.map(|n| (n.text.clone(), item.span)).collect();
+                work.pending.extend(fresh);
                 self.membership_step(operands[k], operands[k + 1], work)?;
             } else {
                 self.subset_step(operands[k], links[k].0, operands[k + 1], work)?;
@@ -210,6 +224,9 @@ impl Checker<'_> {
             return self.report(shapes::expected(wanted, "∅", right.span));
         }
         let items = self.pattern_items(left, roots.len(), work);
+        if items.len() > INDEX_LIMIT {
+            return self.report(crate::diagnostic::size::indices(INDEX_LIMIT, left.span));
+        }
         if items.len() != roots.len() {
             return self.report(shapes::tuple_size(roots.len(), items.len(), left.span));
         }

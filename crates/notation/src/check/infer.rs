@@ -37,6 +37,12 @@ impl Checker<'_> {
         for carrier in &work.carriers {
             self.collect(carrier, name, &mut sources);
         }
+        let letters = name.chars().count();
+        if sources.is_empty() && (2..=4).contains(&letters) {
+            // Σ_{ij} has two indices
+            work.pending.splice(0..0, name.chars().map(|c| (c.to_string(), span)));
+            return Some(());
+        }
         let only = if sources.len() == 1 { sources.pop() } else { None };
         match only {
             None | Some(Source::Unknown) => return self.report(message::no_set(name, span)),

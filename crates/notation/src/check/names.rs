@@ -8,7 +8,7 @@ use crate::syntax::{Clause, Expression, Formulation, Kind, Name};
 use model::Number;
 
 /// The longest word that is split.
-const SPLIT_LIMIT: usize = 40;
+const SPLIT_LIMIT: usize = 20;
 
 /// A piece of a word.
 #[derive(Debug, Clone, PartialEq)]

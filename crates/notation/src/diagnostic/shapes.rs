@@ -57,7 +57,12 @@ pub(crate) fn not_constant(what: &str, span: Span) -> Diagnostic {
 
 pub(crate) fn tuple_size(wanted: usize, found: usize, span: Span) -> Diagnostic {
     let message = format!("the set holds tuples of {wanted}, found a tuple of {found}");
-    Diagnostic::error("shape.tuple", span, message)
+    let diagnostic = Diagnostic::error("shape.tuple", span, message);
+    let places: Vec<&str> = ["i", "j", "k", "l", "m"].into_iter().take(wanted).collect();
+    if wanted > 1 && wanted == places.len() {
+        return diagnostic.mend(format!("write ({})", places.join(",")));
+    }
+    diagnostic
 }
 
 pub(crate) fn not_comparable(span: Span) -> Diagnostic {

@@ -22,6 +22,21 @@ pub(crate) fn steps(family: &str, limit: u64, span: Span) -> Diagnostic {
     Diagnostic::error("size.steps", span, message)
 }
 
+pub(crate) fn work(limit: u64, span: Span) -> Diagnostic {
+    let message = format!("the value of one expression takes more than {limit} steps");
+    Diagnostic::error("size.work", span, message)
+}
+
+pub(crate) fn number(bits: usize, span: Span) -> Diagnostic {
+    let message = format!("the number needs more than {bits} binary digits");
+    Diagnostic::error("size.number", span, message)
+}
+
+pub(crate) fn indices(limit: usize, span: Span) -> Diagnostic {
+    let message = format!("more than {limit} indices are bound on one line");
+    Diagnostic::error("size.indices", span, message)
+}
+
 pub(crate) fn set(members: u128, limit: usize, span: Span) -> Diagnostic {
     Diagnostic::error("size.set", span, format!("the set has {members} members, more than {limit}"))
 }

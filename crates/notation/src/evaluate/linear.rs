@@ -2,7 +2,7 @@
 
 use model::Number;
 
-use super::{Environment, Evaluated, Evaluator, Guard, fail};
+use super::{Environment, Evaluated, Evaluator, Guard, fail, moderate};
 use crate::diagnostic::{shapes, subsets};
 use crate::place::Span;
 use crate::plan::Node;
@@ -89,6 +89,7 @@ impl Evaluator {
             _ => {
                 let value = self.number(node, env)? * &scale.factor;
                 into.add(scale.guard, value);
+                into.constant = moderate(std::mem::take(&mut into.constant))?;
             }
         }
         Ok(())
@@ -107,7 +108,7 @@ impl Evaluator {
             factors.iter().partition(|f| self.is_plain(f));
         let mut scale = scale.clone();
         for node in constant {
-            scale.factor *= self.number(node, env)?;
+            scale.factor = moderate(scale.factor * self.number(node, env)?)?;
         }
         match open[..] {
             [] => into.add(scale.guard, scale.factor),

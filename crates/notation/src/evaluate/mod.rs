@@ -8,7 +8,7 @@ mod truth;
 mod value;
 mod walk;
 
-use std::cell::RefCell;
+use std::cell::{Cell, RefCell};
 use std::collections::BTreeMap;
 use std::rc::Rc;
 
@@ -17,9 +17,10 @@ pub(crate) use linear::{Linear, Scale};
 pub(crate) use value::{Element, Pool, Set, Value};
 pub(crate) use walk::{Found, Walk, placed};
 
-use crate::diagnostic::{Diagnostic, data, rows, shapes};
+use crate::diagnostic::{Diagnostic, data, rows, shapes, size};
 use crate::place::Span;
 use crate::plan::{Node, Plan, SymbolId, VariableNumber};
+use model::Number;
 
 pub(crate) type Evaluated<T> = Result<T, Box<Diagnostic>>;
 
@@ -29,6 +30,19 @@ pub(crate) fn fail<T>(diagnostic: Diagnostic) -> Evaluated<T> {
 
 /// The most members that a set may have.
 pub(crate) const SET_LIMIT: usize = 2_000_000;
+
+/// The most steps that one value of a symbol, or one row, may take.
+const WORK_LIMIT: u64 = 20_000_000;
+
+/// The most binary digits of a numerator or denominator.
+pub(crate) const NUMBER_BITS: usize = 1 << 13;
+
+/// A number of moderate size.
+pub(crate) fn moderate(number: Number) -> Evaluated<Number> {
+    use dashu_int::ops::BitTest;
+    let bits = number.numerator().bit_len().max(number.denominator().bit_len());
+    if bits > NUMBER_BITS { fail(size::number(NUMBER_BITS, Span::default())) } else { Ok(number) }
+}
 
 /// The values of a symbol: one, or one for each index tuple.
 #[derive(Debug, Clone)]
@@ -51,6 +65,8 @@ pub(crate) struct Evaluator {
     pub(crate) values: Vec<Option<Values>>,
     pub(crate) columns: Vec<Columns>,
     once: RefCell<Vec<Option<Value>>>,
+    /// Steps since the value or row at hand was begun.
+    work: Cell<u64>,
     /// The ground set, while a row over subsets is evaluated.
     pub(crate) ground: Option<Rc<Set>>,
 }
@@ -67,8 +83,21 @@ impl Evaluator {
             values: vec![None; symbols],
             columns: (0..variables).map(|_| Columns::default()).collect(),
             once: RefCell::new(vec![None; cells]),
+            work: Cell::new(0),
             ground: None,
         }
+    }
+
+    /// Begins a value or a row.
+    pub(crate) fn start_work(&self) {
+        self.work.set(0);
+    }
+
+    /// Takes `steps` from what one value or row may cost.
+    fn spend(&self, steps: usize) -> Evaluated<()> {
+        let work = self.work.get().saturating_add(steps as u64);
+        self.work.set(work);
+        if work > WORK_LIMIT { fail(size::work(WORK_LIMIT, Span::default())) } else { Ok(()) }
     }
 
     pub(crate) fn environment(&self) -> Environment {

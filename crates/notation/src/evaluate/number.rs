@@ -3,14 +3,11 @@
 use dashu_int::IBig;
 use model::Number;
 
-use super::{Environment, Evaluated, Evaluator, Value, fail};
+use super::{Environment, Evaluated, Evaluator, NUMBER_BITS, Value, fail, moderate};
 use crate::diagnostic::{shapes, subsets};
 use crate::place::Span;
 use crate::plan::{Node, Step};
 use crate::syntax::Big;
-
-/// The most bits of a power.
-const POWER_BITS: usize = 20_000;
 
 impl Evaluator {
     /// The value of a number without variables.
@@ -22,14 +19,14 @@ impl Evaluator {
                 let mut sum = Number::ZERO;
                 for (minus, term) in terms {
                     let term = self.number(term, env)?;
-                    sum = if *minus { sum - term } else { sum + term };
+                    sum = moderate(if *minus { sum - term } else { sum + term })?;
                 }
                 Ok(sum)
             }
             Node::Multiply(factors) => {
                 let mut product = Number::ONE;
                 for factor in factors {
-                    product *= self.number(factor, env)?;
+                    product = moderate(product * self.number(factor, env)?)?;
                 }
                 Ok(product)
             }
@@ -117,13 +114,14 @@ impl Evaluator {
                 return fail(subsets::nonlinear(span));
             }
             let value = this.number(body, env)?;
-            total = Some(match (total.take(), big) {
+            let next = match (total.take(), big) {
                 (None, _) => value,
                 (Some(sum), Big::Sum) => sum + value,
                 (Some(product), Big::Product) => product * value,
                 (Some(best), Big::Least) => best.min(value),
                 (Some(best), Big::Greatest) => best.max(value),
-            });
+            };
+            total = Some(moderate(next)?);
             Ok(())
         })?;
         match (total, big) {
@@ -142,7 +140,7 @@ fn power(base: &Number, exponent: &Number, span: Span) -> Evaluated<Number> {
     let steps = usize::try_from(exponent.unsigned_abs()).unwrap_or(usize::MAX);
     let bits =
         bit_length(base.numerator()).max(bit_length(&IBig::from(base.denominator().clone())));
-    if bits.saturating_mul(steps) > POWER_BITS {
+    if bits.saturating_mul(steps) > NUMBER_BITS {
         return fail(shapes::power(span));
     }
     if exponent < 0 && base.is_zero() {

@@ -52,6 +52,7 @@ impl Evaluator {
             }
             Node::SetOperation(operator, a, b) => {
                 let (a, b) = (self.set(a, env)?, self.set(b, env)?);
+                self.spend(a.len() + b.len())?;
                 Ok(Rc::new(operate(*operator, &a, &b)))
             }
             Node::Cross(factors, span) => self.cross(factors, *span, env),
@@ -79,6 +80,7 @@ impl Evaluator {
         if members > SET_LIMIT as i128 {
             return fail(size::set(members.unsigned_abs(), SET_LIMIT, span));
         }
+        self.spend(usize::try_from(members).unwrap_or(0))?;
         let mut pool = self.pool.borrow_mut();
         let tuples: Vec<Vec<Element>> =
             (from..=to).map(|n| vec![pool.intern(&n.to_string())]).collect();
@@ -92,6 +94,7 @@ impl Evaluator {
         if members > SET_LIMIT as u128 {
             return fail(size::set(members, SET_LIMIT, span));
         }
+        self.spend(usize::try_from(members).unwrap_or(0))?;
         let mut tuples: Vec<Vec<Element>> = vec![Vec::new()];
         for set in &sets {
             let longer = |tuple: &Vec<Element>| {

@@ -68,6 +68,7 @@ impl Walk {
                 return Ok(Found::Paused);
             }
             *budget -= 1;
+            evaluator.spend(1)?;
             let Some(depth) = self.frames.len().checked_sub(1) else {
                 self.done = true;
                 return Ok(Found::Done);
@@ -92,7 +93,7 @@ impl Walk {
             evaluator.set(set, env)?
         };
         let (mut mask, mut key) = (0_u32, Vec::new());
-        for (place, one) in pattern.iter().enumerate().take(32) {
+        for (place, one) in pattern.iter().enumerate() {
             if let Pattern::Match(node) = one {
                 mask |= 1 << place;
                 key.push(evaluator.element(node, env)?);

@@ -237,6 +237,7 @@ impl Expansion {
     /// One more tuple of a walk, within the budget and the limit on steps.
     fn next_tuple(&mut self, steps: &[Step], name: &str, budget: &mut u64) -> Evaluated<Found> {
         let before = *budget;
+        self.evaluator.start_work();
         let found = self.walk.next(steps, &self.evaluator, &mut self.env, budget)?;
         self.steps += before - *budget;
         let limit = self.limits.nonzeros as u64 * STEPS_PER_NONZERO;
@@ -277,9 +278,11 @@ impl Expansion {
         let mut linear = Linear::default();
         self.evaluator.linear(node, sign, &mut self.env, &mut linear)?;
         *budget = budget.saturating_sub(linear.terms.len() as u64);
-        self.offset += linear.constant;
+        let offset = std::mem::take(&mut self.offset);
+        self.offset = crate::evaluate::moderate(offset + linear.constant)?;
         for (column, _, coefficient) in linear.terms {
-            *self.costs.entry(column).or_default() += coefficient;
+            let cost = self.costs.entry(column).or_default();
+            *cost = crate::evaluate::moderate(std::mem::take(cost) + coefficient)?;
         }
         Ok(())
     }

@@ -279,3 +279,64 @@ fn settle_braces(tokens: &mut Vec<Token>) {
     }
     *tokens = out;
 }
+
+#[cfg(test)]
+mod tests {
+    use super::lex;
+    use super::token::Kind;
+
+    fn kinds(text: &str) -> Vec<Kind> {
+        lex(text, 0).iter().map(|token| token.kind).filter(|&kind| kind != Kind::End).collect()
+    }
+
+    fn same(spellings: &[&str]) {
+        for spelling in spellings {
+            assert_eq!(kinds(spelling), kinds(spellings[0]), "{spelling}");
+        }
+    }
+
+    #[test]
+    fn signs_have_three_spellings() {
+        same(&["Σ", "∑", "sum", "\\sum"]);
+        same(&["∀", "forall", "for", "for all", "for each", "\\forall", "\\text{for all }"]);
+        same(&["≤", "<=", "\\le", "\\leq", "\\leqslant"]);
+        same(&["⊆", "subseteq", "\\subseteq"]);
+        same(&["∉", "notin", "not in", "\\notin"]);
+        same(&["V ∖ {r}", "V \\ {r}", "V\\{r}", "V setminus {r}", "V \\setminus \\{r\\}"]);
+        same(&["x_{ij}", "xᵢⱼ"]);
+        same(&["2^{2}", "2²"]);
+        same(&["ℝ", "\\mathbb{R}", "\\mathbb R"]);
+        same(&["∅", "\\emptyset", "emptyset", "\\varnothing"]);
+        same(&["|S|", "\\lvert S \\rvert", "\\left| S \\right|", "\\vert S\\vert"]);
+        same(&["{1..T}", "{1 .. T}", "\\{1 \\ldots T\\}", "{1…T}"]);
+    }
+
+    #[test]
+    fn names_keep_their_decorations_and_letters() {
+        let text = |source: &str| lex(source, 0)[0].text.clone();
+        assert_eq!(text("\\bar d_t"), "\\bar d");
+        assert_eq!(text("\\bar{d}_t"), "\\bar d");
+        assert_eq!(text("\\mathcal{A}"), "\\mathcal A");
+        assert_eq!(text("\\lambda_{ij}"), "λ");
+        assert_eq!(text("\\mathrm{dist}"), "dist");
+        assert_eq!(text("dist2'"), "dist2'");
+    }
+
+    #[test]
+    fn numbers_stop_before_dots() {
+        assert_eq!(kinds("1..3"), [Kind::Number, Kind::Dots, Kind::Number]);
+        assert_eq!(kinds("1.5e-3"), [Kind::Number]);
+        assert_eq!(kinds("2e"), [Kind::Number, Kind::Word]);
+    }
+
+    #[test]
+    fn what_says_nothing_vanishes() {
+        same(&[
+            "x ≤ 1",
+            "x & \\le \\; 1 \\nonumber",
+            "$x \\leq 1$ % remark",
+            "x ≤ 1 # remark",
+            "x \\label{q} ≤ 1",
+        ]);
+    }
+}

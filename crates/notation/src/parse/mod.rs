@@ -174,3 +174,112 @@ impl Parser<'_> {
         result
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::parse;
+    use crate::syntax::{Formulation, Kind};
+
+    fn read(text: &str) -> Formulation {
+        let parsed = parse(text);
+        let lines: Vec<String> = parsed.diagnostics.iter().map(|d| d.line(text)).collect();
+        assert!(lines.is_empty(), "{text}: {lines:?}");
+        parsed.tree
+    }
+
+    /// Two spellings of one statement.
+    fn same(one: &str, other: &str) {
+        let statement =
+            |line: &str| read(&format!("minimise\n x\nsubject to\n {line}\n")).statements;
+        assert_eq!(statement(one), statement(other), "{one} and {other}");
+    }
+
+    #[test]
+    fn the_first_line_is_a_title_when_it_says_nothing_else() {
+        assert_eq!(
+            read("Cuts & flows for 3 stops (Wong 1980)\nminimise\n x").title.as_deref(),
+            Some("Cuts & flows for 3 stops (Wong 1980)")
+        );
+        assert_eq!(read("minimise\n x").title, None);
+        assert_eq!(read("# remark\n\nminimise x").title, None);
+    }
+
+    #[test]
+    fn lines_end_and_go_on_where_they_should() {
+        let count =
+            |text: &str| read(&format!("minimise\n x\nsubject to\n{text}")).statements.len();
+        assert_eq!(count("a ≤ 1\nb ≤ 2"), 2);
+        assert_eq!(count("a ≤\n1; b ≤ 2 \\\\ c ≤ 3"), 3);
+        assert_eq!(count("a +\nb ≤ 2\n  ∀ i ∈ V\nc ≤ 1"), 2);
+        assert_eq!(count("a ≤ (1 +\n 2)\n\nc ≤ 1"), 2);
+        assert_eq!(count("a ≤ b ∀ i ∈ V\n−c ≤ 1"), 2, "nothing is taken from a quantifier");
+        assert_eq!(count("\\begin{align} a &\\le 1\n + b \\\\ c &\\ge 2\\end{align}"), 2);
+    }
+
+    #[test]
+    fn sums_reach_to_the_next_plus() {
+        same("Σ_{i ∈ V} a_i x_i + y ≤ 1", "(Σ_{i ∈ V} a_i x_i) + y ≤ 1");
+        same("2 Σ_{i ∈ V} Σ_{j ∈ V} x ≤ 1", "2 (Σ_{i ∈ V} (Σ_{j ∈ V} x)) ≤ 1");
+        same("\\sum_{i=1}^n x_i ≤ 1", "Σ_{i ∈ {1..n}} x_i ≤ 1");
+        same("\\sum\\limits_{i=1}^{n} x_i ≤ 1", "Σ_{i = 1,…,n} x_i ≤ 1");
+    }
+
+    #[test]
+    fn precedence_is_that_of_mathematics() {
+        same(
+            "−a b + c / 2 d ≤ 1",
+            "(−(a b)) + ((c / 2) · d) ≤ 1".replace("((c / 2) · d)", "(c / 2 d)").as_str(),
+        );
+        same("x ∈ A ∪ B ∩ C", "x ∈ A ∪ (B ∩ C)");
+        same(
+            "y ≤ 1 ∀ i ∈ V : ¬ i = j ∧ k = l ∨ m = n",
+            "y ≤ 1 ∀ i ∈ V : ((¬(i = j)) ∧ (k = l)) ∨ (m = n)",
+        );
+        same("y ≤ 2 n^2", "y ≤ 2 (n^2)".replace("(n^2)", "n^{2}").as_str());
+    }
+
+    #[test]
+    fn labels_are_no_factors() {
+        let label = |line: &str| {
+            let tree = read(&format!("minimise\n x\nsubject to\n {line}\n"));
+            tree.statements[0].label.as_ref().map(|l| l.text.clone())
+        };
+        assert_eq!(label("x ≤ 1 (leave)").as_deref(), Some("leave"));
+        assert_eq!(label("x ≤ 1 (3)").as_deref(), Some("3"));
+        assert_eq!(label("x ≤ k (n − 1)"), None);
+        assert_eq!(label("x ≤ k (n-1)"), None);
+        assert_eq!(label("x ≤ k (n)"), None);
+        assert_eq!(label("x ≤ 1 ∀ i ∈ V (a)").as_deref(), Some("a"));
+        assert_eq!(label("x ≤ 1 ∀ l ∈ T  (l,S)").as_deref(), Some("l,S"));
+        assert_eq!(label("x ≤ 1 (leave) \\tag{7}").as_deref(), Some("7"), "the tag wins");
+    }
+
+    #[test]
+    fn data_lines_have_remarks() {
+        let remark =
+            |line: &str| read(&format!("data\n {line}\nminimise x")).data[0].remark.clone();
+        assert_eq!(remark("V  stops (in km; all)").as_deref(), Some("stops (in km; all)"));
+        assert_eq!(remark("V\tat sea").as_deref(), Some("at sea"));
+        assert_eq!(remark("V, the stops").as_deref(), Some("the stops"));
+        assert_eq!(remark("c_{i,j}  ∀ (i,j) ∈ A    minutes").as_deref(), Some("minutes"));
+        assert_eq!(remark("V \\text{stops}").as_deref(), Some("stops"));
+        assert_eq!(remark("s, t ∈ V").as_deref(), None);
+    }
+
+    #[test]
+    fn domains_read_as_memberships() {
+        let domain = |line: &str| {
+            let tree = read(&format!("minimise\n x\nsubject to\n {line}\n"));
+            tree.statements[0].links[0].1.kind.clone()
+        };
+        use crate::syntax::NumberSet;
+        assert_eq!(domain("x ∈ ℤ_+"), Kind::NumberSet(NumberSet::IntegerNonNegative));
+        assert_eq!(
+            domain("x ∈ \\mathbb{Z}_{\\ge 0}"),
+            Kind::NumberSet(NumberSet::IntegerNonNegative)
+        );
+        assert_eq!(domain("x ∈ ℤ_{>0}"), Kind::NumberSet(NumberSet::IntegerPositive));
+        assert_eq!(domain("x free"), Kind::NumberSet(NumberSet::Real));
+        assert_eq!(domain("x ∈ ℝ^+"), Kind::NumberSet(NumberSet::RealNonNegative));
+    }
+}

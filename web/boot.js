@@ -1,28 +1,30 @@
 "use strict";
-// Opens the page out of its own file: each part stands in it as base64 of gzip. The engine is
-// compiled once here; the page posts the compiled module to each of its workers.
+// Opens the page out of its own file: page module, engine module and the worker's script stand in
+// it packed into one. The engine is compiled once here; the page posts the compiled module to each
+// of its workers.
 (async () => {
   const notice = document.getElementById("boot");
 
-  async function unpack(id) {
-    const element = document.getElementById(id);
+  function unpack() {
+    const element = document.getElementById("pack");
     const packed = atob(element.textContent);
     element.remove();
     const bytes = new Uint8Array(packed.length);
     for (let i = 0; i < packed.length; i += 1) bytes[i] = packed.charCodeAt(i);
-    const stream = new Blob([bytes]).stream().pipeThrough(new DecompressionStream("gzip"));
-    return new Response(stream).arrayBuffer();
-  }
-
-  async function compile(id) {
-    return WebAssembly.compile(await unpack(id));
+    const unpacked = unpackLzma(bytes);
+    let from = 0;
+    return element.dataset.lengths.split(",").map((length) => {
+      const part = unpacked.subarray(from, from + Number(length));
+      from += Number(length);
+      return part;
+    });
   }
 
   try {
-    const [page, engine, script] = await Promise.all([
-      compile("page-module"),
-      compile("engine-module"),
-      unpack("worker-script"),
+    const [pageBytes, engineBytes, script] = unpack();
+    const [page, engine] = await Promise.all([
+      WebAssembly.compile(pageBytes),
+      WebAssembly.compile(engineBytes),
     ]);
     const blob = new Blob([script], { type: "text/javascript" });
     globalThis.hullward = Object.freeze({

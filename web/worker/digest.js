@@ -2,20 +2,21 @@
 // Runs the engine of a built page under Node and prints the digest of each rival's log:
 //   node digest.js PAGE.html SCENARIO.toml RIVALS TICKS_A_SLICE
 const { readFileSync } = require("node:fs");
+const { join } = require("node:path");
 const vm = require("node:vm");
-const { gunzipSync } = require("node:zlib");
 
 const [page, scenario, rivals, slice] = process.argv.slice(2);
-const html = readFileSync(page, "utf8");
+const found = readFileSync(page, "utf8").match(/id="pack" data-lengths="([^"]*)">([^<]*)</);
+if (found === null) throw new Error(`${page} holds no packed modules`);
+const lengths = found[1].split(",").map(Number);
 
-function unpack(id) {
-  const found = html.match(new RegExp(`id="${id}">([^<]*)</script>`));
-  if (found === null) throw new Error(`${page} holds no ${id}`);
-  return gunzipSync(Buffer.from(found[1], "base64"));
-}
+vm.runInThisContext(readFileSync(join(__dirname, "../unpack.js"), "utf8"));
+const unpacked = unpackLzma(new Uint8Array(Buffer.from(found[2], "base64")));
+const engine = unpacked.subarray(lengths[0], lengths[0] + lengths[1]);
+const script = unpacked.subarray(lengths[0] + lengths[1]);
 
-vm.runInThisContext(unpack("worker-script").toString("utf8"));
-globalThis.hullwardModule = new WebAssembly.Module(unpack("engine-module"));
+vm.runInThisContext(Buffer.from(script).toString("utf8"));
+globalThis.hullwardModule = new WebAssembly.Module(engine);
 globalThis.hullwardScenario = readFileSync(scenario, "utf8");
 vm.runInThisContext("wasm_bindgen.initSync({ module: hullwardModule })");
 for (let rival = 0; rival < Number(rivals); rival += 1) {

@@ -16,15 +16,13 @@ use crate::fault::Fault;
 pub(crate) struct Parts<'a> {
     /// The style sheet.
     pub(crate) style: &'a str,
-    /// The page's module, as base64 of gzip.
-    pub(crate) page_module: &'a str,
-    /// The engine's module, as base64 of gzip.
-    pub(crate) engine_module: &'a str,
-    /// The worker's script, as base64 of gzip.
-    pub(crate) worker_script: &'a str,
+    /// The lengths of the packed parts: page module, engine module, worker's script.
+    pub(crate) lengths: &'a str,
+    /// The packed parts.
+    pub(crate) pack: &'a str,
     /// The page module's glue, a script.
     pub(crate) page_glue: &'a str,
-    /// The boot script.
+    /// The decoder and the boot script.
     pub(crate) boot: &'a str,
 }
 
@@ -41,9 +39,8 @@ pub(crate) fn assemble(template: &str, parts: &Parts<'_>) -> Result<String, Faul
         &[
             ("policy", &policy),
             ("style", parts.style),
-            ("page-module", parts.page_module),
-            ("engine-module", parts.engine_module),
-            ("worker-script", parts.worker_script),
+            ("lengths", parts.lengths),
+            ("pack", parts.pack),
             ("page-glue", &page_glue),
             ("boot", &boot),
         ],
@@ -121,9 +118,8 @@ mod tests {
     fn parts<'a>() -> Parts<'a> {
         Parts {
             style: "body { margin: 0 }",
-            page_module: "AAAA",
-            engine_module: "BBBB",
-            worker_script: "CCCC",
+            lengths: "1,2,3",
+            pack: "AAAA",
             page_glue: "let wasm_bindgen = '</script><!-- {{boot}}';",
             boot: "start();",
         }
@@ -177,7 +173,7 @@ mod tests {
             "a = '\\x3c/SCRIPT>' < b; c = `\\x3c!--\\x3cscript>é<`"
         );
         let file = assemble(TEMPLATE, &parts()).expect("the template takes the parts");
-        assert_eq!(file.matches("</script>").count(), 5);
+        assert_eq!(file.matches("</script>").count(), 3);
         assert!(file.contains("{{boot}}'"), "a value is not filled itself");
     }
 

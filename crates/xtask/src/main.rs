@@ -16,6 +16,7 @@ mod compiler;
 mod fault;
 mod html;
 mod options;
+mod pack;
 mod packages;
 mod parity;
 mod process;

@@ -218,7 +218,7 @@ fn violated(sets: &[ViolatedSubset], shown: Option<usize>, show: &Callback<usize
     let more = sets.len().saturating_sub(SHOWN) as u64;
     html! {
         <>
-            <h3>{ "Violated, though the model asks for it" }</h3>
+            <h3>{ "Sets whose rows it violates" }</h3>
             <ul class="sets small" data-testid="violated">
                 for (index, set) in sets.iter().take(SHOWN).enumerate() {
                     <li key={index}>

@@ -17,8 +17,8 @@ use crate::view::axis::across;
 /// marks are drawn.
 const CURVED: usize = 600;
 const LEAFED: usize = 1_200;
-const EDGED: usize = 6_000;
-const DENSE: usize = 20_000;
+const EDGED: usize = 3_000;
+const DENSE: usize = 6_000;
 /// Edges drawn in one stroke: a longer path costs more than its parts.
 const STROKE: usize = 64;
 /// Shades of a dense drawing.
@@ -197,13 +197,14 @@ impl Pen<'_> {
         let mut shown = Shown::new(self.scene);
         for shape in Shape::ALL {
             self.context.begin_path();
+            let usual = if self.tree.nodes().len() > LEAFED { 0.75 } else { 1.0 };
             for (place, node) in self.tree.nodes().iter().enumerate() {
                 if Shape::of(node.state) != shape {
                     continue;
                 }
                 let Some((x, y)) = self.scene.at(self.tree, place) else { continue };
                 if shown.first(shape, x, y) {
-                    self.mark(shape, x, y, if place == 0 { 2.0 } else { 1.0 });
+                    self.mark(shape, x, y, if place == 0 { 2.0 } else { usual });
                 }
             }
             self.ink(shape);

@@ -10,7 +10,7 @@
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
 mod common;
 
-use std::collections::BTreeSet;
+use std::collections::{BTreeMap, BTreeSet};
 
 use common::{errors, exact_row_text, made, made_with, rows_of, stops};
 use model::{FamilyState, Model, Row, RowId, Scope, SubsetCondition, nearest_f64};
@@ -236,6 +236,14 @@ fn a_small_family_over_subsets_can_be_written() {
     assert!(model.subset_families().is_empty());
     assert_eq!(rows_of(&model, "subtour")[0], "x[Ash → Birch] + x[Birch → Ash] ≤ 1");
     assert_eq!(points(&model, 20, 1), tours(5));
+    let (model, found) =
+        hullward_notation::model(&shipped("subtours"), &stops(15), &BTreeMap::new(), &states)
+            .unwrap();
+    assert!(found.iter().any(|d| d.code == "subset.on-demand"));
+    assert_eq!(
+        (model.subset_families().len(), model.families()[2].state),
+        (1, FamilyState::OnDemand)
+    );
     let out = [("order".to_owned(), FamilyState::Out)].into();
     let model = made_with(&shipped("labels"), &stops(5), &out);
     assert_eq!(model.row_count(), 10);

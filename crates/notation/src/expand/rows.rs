@@ -16,6 +16,8 @@ pub(super) struct Progress {
     pub(super) seen: u64,
     /// Whether one of them can bind.
     pub(super) binds: bool,
+    /// Families over subsets that are to be written out.
+    pub(super) waiting: Vec<model::SubsetFamily>,
 }
 
 impl Expansion {
@@ -39,6 +41,7 @@ impl Expansion {
                 Found::Tuple(_) => self.member(family, budget)?,
                 Found::Paused => return Ok(()),
                 Found::Done => {
+                    self.settle_subset_family(family)?;
                     self.close_family(family);
                     self.next_family(number);
                     return Ok(());
@@ -66,7 +69,7 @@ impl Expansion {
     fn open_family(&mut self, family: &FamilyPlan) -> Evaluated<bool> {
         let state = self.state(family);
         if family.subset.is_some() {
-            return self.open_subset_family(family, state);
+            return Ok(self.open_subset_family(family, state));
         }
         self.builder.family(&family.name, state, family.arrow);
         if state == FamilyState::Out {

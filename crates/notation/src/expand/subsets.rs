@@ -18,17 +18,14 @@ const WRITTEN_MEMBERS: usize = 1 << 12;
 const WRITTEN_GROUND: usize = 16;
 
 impl Expansion {
-    pub(super) fn open_subset_family(
-        &mut self,
-        family: &FamilyPlan,
-        state: FamilyState,
-    ) -> Evaluated<bool> {
-        // a family that is to be written is opened as one on demand when it proves too large
-        self.builder.family(&family.name, state, family.arrow);
+    /// Opens a family over subsets; whether it is to be expanded. One that is to be written
+    /// out is opened when its size is known.
+    pub(super) fn open_subset_family(&mut self, family: &FamilyPlan, state: FamilyState) -> bool {
         if state != FamilyState::In {
+            self.builder.family(&family.name, state, family.arrow);
             self.builder.over_subsets();
         }
-        Ok(state != FamilyState::Out)
+        state != FamilyState::Out
     }
 
     /// The family for the outer tuple at hand.
@@ -52,15 +49,41 @@ impl Expansion {
 
     fn add_subset_family(&mut self, family: &FamilyPlan, found: SubsetFamily) -> Evaluated<()> {
         if self.state(family) == FamilyState::In {
-            match members(&found) {
-                Some(members) => return self.write_members(family, &found, members),
-                None => return fail(message::too_many_to_write(&family.name, family.span)),
-            }
+            self.family.waiting.push(found);
+            return Ok(());
         }
         match self.builder.subset_family(found) {
             Ok(_) => Ok(()),
             Err(error) => fail(size::model(error.to_string(), family.span)),
         }
+    }
+
+    /// Writes a family over subsets out, where that was asked for and it is small enough;
+    /// else it stays on demand.
+    pub(super) fn settle_subset_family(&mut self, family: &FamilyPlan) -> Evaluated<()> {
+        let waiting = std::mem::take(&mut self.family.waiting);
+        if family.subset.is_none() || self.state(family) != FamilyState::In {
+            return Ok(());
+        }
+        let all: Option<Vec<Vec<BTreeSet<LabelId>>>> = waiting.iter().map(members).collect();
+        let Some(all) =
+            all.filter(|all| all.iter().map(Vec::len).sum::<usize>() <= WRITTEN_MEMBERS)
+        else {
+            self.warnings.push(message::too_many_to_write(&family.name, family.span));
+            self.builder.family(&family.name, FamilyState::OnDemand, family.arrow);
+            self.builder.over_subsets();
+            for found in waiting {
+                if let Err(error) = self.builder.subset_family(found) {
+                    return fail(size::model(error.to_string(), family.span));
+                }
+            }
+            return Ok(());
+        };
+        self.builder.family(&family.name, FamilyState::In, family.arrow);
+        for (found, members) in waiting.iter().zip(all) {
+            self.write_members(family, found, members)?;
+        }
+        Ok(())
     }
 
     fn write_members(

@@ -5,12 +5,15 @@ use std::io::{Result, Write};
 
 use record::results::{self, RivalResult, SearchReport, Status};
 use record::scenario::Scenario;
-use report::number::{count, percent, short};
+use report::number::{count, of, percent, short};
 
 /// Stands under every table.
 const CAUTION: &str = "\
 A plan that comes out of a model is a decision aid; driving, working-time, energy and
 safety rules of the place, and the people licensed to apply them, come first.";
+
+/// Longer fractions are no news to a reader; they stand in the JSON.
+const LONGEST_FRACTION: usize = 16;
 
 /// The columns by their heading.
 const HEADINGS: [&str; 11] = [
@@ -146,16 +149,15 @@ fn notes(one: &RivalResult) -> Vec<String> {
     if let Some(root) = &one.root
         && let (Some(exact), true) = (&root.checked_bound, root.checked)
         && exact.contains('/')
-        && exact.len() <= 40
+        && exact.len() <= LONGEST_FRACTION
     {
         notes.push(format!("root bound proved: {exact}"));
     }
     let separated = one.families.iter().filter(|family| !family.separation.is_empty());
     notes.extend(separated.map(|family| {
-        format!(
-            "{} on demand by {}, {} rows added at the root",
-            family.name, family.separation, family.added
-        )
+        let (name, how) = (&family.name, &family.separation);
+        let added = of(u64::from(family.added), "row");
+        format!("{name} on demand ({how}): {added} added at the root")
     }));
     notes
 }

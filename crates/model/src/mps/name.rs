@@ -39,6 +39,7 @@ pub(super) fn groups<'a>(names: impl Iterator<Item = &'a str>) -> Vec<Group<'a>>
 /// Makes names without blanks, quotes and control characters, none twice.
 #[derive(Debug, Default)]
 pub(super) struct Names {
+    /// The names given, each with the last number that was added to it.
     taken: BTreeMap<String, usize>,
     /// How many names are not as they were wanted.
     pub(super) changed: usize,
@@ -47,7 +48,10 @@ pub(super) struct Names {
 impl Names {
     /// A base of names: of a variable or a family.
     pub(super) fn base(&mut self, wanted: &str, indexed: bool) -> String {
-        let mut name = safe(wanted, "'\"$*~");
+        let mut name = safe(wanted, "'\"");
+        if name.starts_with(['*', '$']) {
+            name.replace_range(..1, "_");
+        }
         if indexed || split(&name).is_some() {
             name = safe(&name, "[]()");
         }
@@ -61,7 +65,7 @@ impl Names {
         if labels.is_empty() {
             return base.to_owned();
         }
-        let safe: Vec<String> = labels.iter().map(|label| safe(label, "'\"~,[]()")).collect();
+        let safe: Vec<String> = labels.iter().map(|label| safe(label, "'\",[]()")).collect();
         let wanted = format!("{base}[{}", safe.join(","));
         let name = self.unique(wanted.clone());
         let renamed = name != wanted || safe.iter().zip(labels).any(|(a, b)| a != b);
@@ -69,11 +73,19 @@ impl Names {
         format!("{name}]")
     }
 
-    /// The name, or the name with `~2`, `~3`, … where it is taken. Names wanted hold no `~`.
+    /// The name, or the name with `~2`, `~3`, … where it is taken.
     fn unique(&mut self, wanted: String) -> String {
-        let times = self.taken.entry(wanted.clone()).or_insert(0);
-        *times += 1;
-        if *times == 1 { wanted } else { format!("{wanted}~{times}") }
+        let mut times = self.taken.get(&wanted).copied().unwrap_or(0);
+        let mut name = wanted.clone();
+        while self.taken.contains_key(&name) {
+            times += 1;
+            name = format!("{wanted}~{times}");
+        }
+        if name != wanted {
+            self.taken.insert(wanted, times);
+        }
+        self.taken.insert(name.clone(), 1);
+        name
     }
 }
 
@@ -109,10 +121,14 @@ mod tests {
         let mut names = Names::default();
         assert_eq!(names.base("row 3", false), "row_3");
         assert_eq!(names.base("row_3", false), "row_3~2");
+        assert_eq!(names.base("row_3", false), "row_3~3");
+        assert_eq!(names.base("row_3~2", false), "row_3~2~2");
+        assert_eq!(names.base("a*b~$", false), "a*b~$");
+        assert_eq!(names.base("$x", false), "_x");
         assert_eq!(names.base("", false), "_");
         assert_eq!(names.base("x[1]", false), "x_1_");
         assert_eq!(names.member("x", &["New York", "a,b"]), "x[New_York,a_b]");
         assert_eq!(names.member("x", &["New_York", "a_b"]), "x[New_York,a_b~2]");
-        assert_eq!(names.changed, 6);
+        assert_eq!(names.changed, 9);
     }
 }

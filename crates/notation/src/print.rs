@@ -6,6 +6,8 @@ use std::fmt::Write as _;
 use dashu_int::{IBig, UBig};
 use model::Number;
 
+use crate::lex::lex;
+use crate::lex::token::Kind as Token;
 use crate::syntax::{
     Additive, Big, Clause, Expression, Formulation, Function, Kind, Line, Multiplicative, Name,
     NumberSet, Relation,
@@ -35,7 +37,7 @@ fn part(out: &mut String, word: &str, lines: &[Line]) {
     }
     let _ = writeln!(out, "{word}");
     for (i, one) in lines.iter().enumerate() {
-        let printed = line(one);
+        let printed = line(one, word == "data");
         // a line that begins with an operator would go on with the one before
         if i > 0 && printed.starts_with(['−', '¬']) {
             out.push('\n');
@@ -44,9 +46,8 @@ fn part(out: &mut String, word: &str, lines: &[Line]) {
     }
 }
 
-/// One line with its quantifier, label and remark.
-#[must_use]
-pub fn line(line: &Line) -> String {
+/// One line with its quantifier, label and remark; `wide` says that two spaces begin a remark.
+fn line(line: &Line, wide: bool) -> String {
     let mut out = list(&line.left);
     for (relation, operand) in &line.links {
         let _ = write!(out, " {} {}", sign(*relation), at(operand, RANGE));
@@ -58,18 +59,23 @@ pub fn line(line: &Line) -> String {
         let _ = write!(out, "  \\tag{{{}}}", label.text);
     }
     if let Some(remark) = &line.remark {
-        let _ = match reads_as_remark(remark) {
-            true => write!(out, "  {remark}"),
-            false => write!(out, "  \\text{{{remark}}}"),
-        };
+        out.push_str(&remark_text(remark, wide));
     }
     out
 }
 
-/// Whether a remark reads as one after two spaces.
-fn reads_as_remark(remark: &str) -> bool {
-    let first = crate::lex::lex(remark, 0).first().map(|token| token.kind);
-    first == Some(crate::lex::token::Kind::Word) && !remark.contains(['#', '%', '\\'])
+/// A remark in a spelling that reads back as one.
+fn remark_text(remark: &str, wide: bool) -> String {
+    let first = |text: &str| lex(text, 0).first().map(|token| token.kind);
+    let plain = first(remark) == Some(Token::Word) && !remark.contains(['#', '%', '\\']);
+    let text = format!("  \\text{{{remark}}}");
+    if wide && plain {
+        format!("  {remark}")
+    } else if first(&text) == Some(Token::Text) {
+        text
+    } else {
+        format!(", {remark}")
+    }
 }
 
 /// A clause of a quantifier: `(i,j) ∈ A : i ≠ r`.

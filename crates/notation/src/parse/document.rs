@@ -106,9 +106,10 @@ impl Parser<'_> {
     fn line_of(&mut self, part: Part, tree: &mut Formulation) {
         let first = self.at;
         let described = matches!(part, Part::Data | Part::Definitions);
-        let (end, after) = if described { self.scan_described() } else { self.scan() };
+        let (end, after) =
+            if described { self.scan_described(part == Part::Data) } else { self.scan() };
         self.end = end;
-        self.place = Surroundings { wide_ends: described, ..Surroundings::default() };
+        self.place = Surroundings { wide_ends: part == Part::Data, ..Surroundings::default() };
         let span = self.tokens[first].span.to(self.tokens[after.max(first + 1) - 1].span);
         let read = self.part_line(part, tree, after, span);
         if read.is_none() {
@@ -231,8 +232,9 @@ impl Parser<'_> {
         !token.kind.continues() || quantified && matches!(token.kind, T::Plus | T::Minus)
     }
 
-    /// The end of what is read of a `data` line that starts here, and of its remark.
-    fn scan_described(&self) -> (usize, usize) {
+    /// The end of what is read of a line of `data` or `definitions` that starts here, and of
+    /// its remark; two spaces begin one where `wide` says so.
+    fn scan_described(&self, wide: bool) -> (usize, usize) {
         let mut depth = 0_u32;
         let last = self.tokens.len() - 1;
         let mut remark = None;
@@ -249,7 +251,7 @@ impl Parser<'_> {
                 if ends {
                     return (remark.unwrap_or(i), i);
                 }
-                if remark.is_none() && depth == 0 && self.remark_starts(i) {
+                if remark.is_none() && depth == 0 && self.remark_starts(i, wide) {
                     remark = Some(i);
                 }
             }
@@ -262,7 +264,7 @@ impl Parser<'_> {
         (remark.unwrap_or(last), last)
     }
 
-    fn remark_starts(&self, i: usize) -> bool {
+    fn remark_starts(&self, i: usize, wide: bool) -> bool {
         let token = &self.tokens[i];
         if token.kind == T::Text {
             return true;
@@ -273,7 +275,7 @@ impl Parser<'_> {
             let word = next.kind == T::Word && next.text.chars().count() > 1;
             return word && !matches!(after, T::Underscore | T::Comma) && !after.is_relation();
         }
-        let wide = token.gap.has(Gap::WIDE) && !token.gap.has(Gap::NEWLINE);
+        let wide = wide && token.gap.has(Gap::WIDE) && !token.gap.has(Gap::NEWLINE);
         wide && !token.kind.continues() && !self.tokens[i - 1].kind.continues()
     }
 }

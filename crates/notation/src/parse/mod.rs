@@ -264,6 +264,14 @@ mod tests {
         assert_eq!(remark("c_{i,j}  ∀ (i,j) ∈ A    minutes").as_deref(), Some("minutes"));
         assert_eq!(remark("V \\text{stops}").as_deref(), Some("stops"));
         assert_eq!(remark("s, t ∈ V").as_deref(), None);
+        let definition =
+            |line: &str| read(&format!("definitions\n {line}\nminimise x")).definitions[0].clone();
+        assert_eq!(
+            definition("m = 2  n"),
+            definition("m = 2 n"),
+            "no factor is taken for a remark"
+        );
+        assert_eq!(definition("m = 2 n \\text{pairs}").remark.as_deref(), Some("pairs"));
     }
 
     #[test]

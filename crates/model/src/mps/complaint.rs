@@ -39,16 +39,13 @@ pub(super) type Words = (&'static str, String, String);
 /// Gathers the complaints about one text.
 pub(super) struct Complaints<'a> {
     text: &'a str,
-    line_starts: Vec<usize>,
     list: Vec<Complaint>,
     errors: usize,
 }
 
 impl<'a> Complaints<'a> {
     pub(super) fn new(text: &'a str) -> Self {
-        let ends = text.bytes().enumerate().filter(|&(_, byte)| byte == b'\n');
-        let line_starts = std::iter::once(0).chain(ends.map(|(at, _)| at + 1)).collect();
-        Self { text, line_starts, list: Vec::new(), errors: 0 }
+        Self { text, list: Vec::new(), errors: 0 }
     }
 
     /// Adds an error. The words are made only when they are kept.
@@ -67,15 +64,8 @@ impl<'a> Complaints<'a> {
         self.errors
     }
 
-    /// The line and column (in characters), both from 1, of a byte of the text.
-    fn place(&self, byte: usize) -> (u32, u32) {
-        let line = self.line_starts.partition_point(|&start| start <= byte).max(1);
-        let before = self.text.get(self.line_starts[line - 1]..byte).unwrap_or("");
-        (count(line), count(before.chars().count()).saturating_add(1))
-    }
-
     fn add(&mut self, severity: Severity, span: Range<usize>, (code, message, mend): Words) {
-        let (line, column) = self.place(span.start);
+        let (line, column) = (0, 0);
         self.list.push(Complaint { severity, code, line, column, span, message, mend });
     }
 
@@ -89,7 +79,23 @@ impl<'a> Complaints<'a> {
             let mend = "Mend the first ones; many of a kind often have one cause.".to_owned();
             self.add(Severity::Error, end..end, ("further-complaints", message, mend));
         }
+        place(self.text, &mut self.list);
         self.list
+    }
+}
+
+/// Gives complaints in the order of the text their lines and columns, in one pass.
+fn place(text: &str, list: &mut [Complaint]) {
+    let (mut line, mut start, mut seen) = (1_u32, 0, 0);
+    for complaint in list {
+        let at = complaint.span.start;
+        for (end, _) in text.get(seen..at).unwrap_or("").match_indices('\n') {
+            line = line.saturating_add(1);
+            start = seen + end + 1;
+        }
+        seen = at;
+        let before = text.get(start..at).unwrap_or("").chars().count();
+        (complaint.line, complaint.column) = (line, count(before).saturating_add(1));
     }
 }
 

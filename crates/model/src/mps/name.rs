@@ -41,12 +41,15 @@ pub(super) fn groups<'a>(names: impl Iterator<Item = &'a str>) -> Vec<Group<'a>>
 pub(super) struct Names {
     /// The names given, each with the last number that was added to it.
     taken: BTreeMap<String, usize>,
+    /// How many members without labels each base has had.
+    bare: BTreeMap<String, usize>,
     /// How many names are not as they were wanted.
     pub(super) changed: usize,
 }
 
 impl Names {
-    /// A base of names: of a variable or a family.
+    /// A base of names: of a variable or a family; `indexed` if it has more than one member, or
+    /// one with labels.
     pub(super) fn base(&mut self, wanted: &str, indexed: bool) -> String {
         let mut name = safe(wanted, "'\"");
         if name.starts_with(['*', '$']) {
@@ -60,10 +63,18 @@ impl Names {
         name
     }
 
-    /// The name of a member of a base. Bases are all made before members.
+    /// The name of a member of a base. Bases are all made before members. Further members
+    /// without labels are numbered from 2.
     pub(super) fn member(&mut self, base: &str, labels: &[&str]) -> String {
         if labels.is_empty() {
-            return base.to_owned();
+            let count = self.bare.entry(base.to_owned()).or_insert(0);
+            *count += 1;
+            if *count == 1 {
+                return base.to_owned();
+            }
+            let wanted = format!("{base}[{count}");
+            self.changed += 1;
+            return format!("{}]", self.unique(wanted));
         }
         let safe: Vec<String> = labels.iter().map(|label| safe(label, "'\",[]()")).collect();
         let wanted = format!("{base}[{}", safe.join(","));

@@ -95,14 +95,14 @@ struct Shape<'a> {
 impl Writer<'_> {
     fn name_all(&mut self) {
         let model = self.model;
-        let indexed = |tuple: &[crate::LabelId]| !tuple.is_empty();
         let mut names = Names::default();
         let variables: Vec<String> = model
             .variables()
             .iter()
             .map(|variable| {
-                let mut columns = variable.columns.clone().map(ColumnId);
-                names.base(&variable.name, columns.any(|c| indexed(model.column_tuple(c))))
+                let alone = variable.columns.len() == 1
+                    && model.column_tuple(ColumnId(variable.columns.start)).is_empty();
+                names.base(&variable.name, !alone)
             })
             .collect();
         for (at, column) in model.columns().iter().enumerate() {
@@ -112,8 +112,9 @@ impl Writer<'_> {
         self.changed = names.changed;
         let mut names = Names::default();
         for family in model.families().iter().filter(|f| f.state == FamilyState::In) {
-            let mut rows = family.rows.clone().map(RowId);
-            let base = names.base(&family.name, rows.any(|r| indexed(model.row_tuple(r))));
+            let alone =
+                family.rows.len() == 1 && model.row_tuple(RowId(family.rows.start)).is_empty();
+            let base = names.base(&family.name, !alone);
             for row in family.rows.clone().map(RowId) {
                 let labels = self.labels(model.row_tuple(row));
                 self.rows.push((row, names.member(&base, &labels)));

@@ -6,7 +6,7 @@ use proptest::prelude::*;
 
 use super::{meaning, model};
 use crate::mps::{WriteError, write};
-use crate::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
+use crate::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, RowId, Sense};
 
 fn number(value: i32) -> Number {
     Number::from_parts(value.into(), 1000_u16.into())
@@ -163,4 +163,26 @@ fn what_mps_cannot_say_is_refused() {
     let refused = Err(WriteError::OutOfRange("x".to_owned()));
     assert_eq!(write(&one_column("x", huge.clone(), Number::ONE).build()), refused);
     assert!(write(&one_column("x", Number::ZERO, huge).build()).is_ok());
+}
+
+#[test]
+fn members_without_labels_are_numbered() {
+    let mut builder = one_column("x[1]", Number::ZERO, Number::ONE);
+    let spec = ColumnSpec { lower: None, upper: None, cost: Number::ONE, integer: true };
+    builder.column(&[], &spec).unwrap();
+    builder.family("rows", FamilyState::In, false);
+    for at in 0..3_u8 {
+        let entries = vec![(ColumnId(u32::from(at % 2)), Number::from(at + 1))];
+        builder.row(&[], Row { entries, lower: None, upper: Some(Number::from(at)) }).unwrap();
+    }
+    let before = builder.build();
+    let written = write(&before).unwrap();
+    let (after, _) = model(&written.text);
+    let names: Vec<_> = (0..3).map(|r| after.row_name(RowId(r))).collect();
+    assert_eq!(names, ["rows", "rows[2]", "rows[3]"]);
+    assert_eq!(after.column_name(ColumnId(1)), "x_1_[2]");
+    for row in (0..3).map(RowId) {
+        assert_eq!(after.row(row), before.row(row));
+    }
+    assert!(written.notes[0].starts_with("4 names were changed"), "{:?}", written.notes);
 }

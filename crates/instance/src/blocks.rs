@@ -124,7 +124,8 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<S
         let mend = "Write a name, rows below it, and a blank line after them.";
         sink.error(0..0, "nothing-to-read", "there is no block", mend);
     }
-    let facts = finish(&mut instance);
+    let mut facts = describe_all(&mut instance);
+    facts.push("Read as named blocks; every line was read.".to_owned());
     Some((instance, facts))
 }
 
@@ -243,7 +244,7 @@ fn number(cell: &Cell, style: Style, sink: &mut Complaints) -> Option<Number> {
 
 /// Says what each block is; where `V` and `c` make a round trip, adds the habits and what is
 /// said of round trips.
-fn finish(instance: &mut Instance) -> Vec<String> {
+pub(crate) fn describe_all(instance: &mut Instance) -> Vec<String> {
     let mut sentences: Vec<String> =
         instance.data().map(|(name, datum)| describe(name, datum)).collect();
     if let Some(square) = square(instance) {
@@ -255,7 +256,6 @@ fn finish(instance: &mut Instance) -> Vec<String> {
         }
         sentences.extend(facts::of(&square, ""));
     }
-    sentences.push("Read as named blocks; every line was read.".to_owned());
     sentences
 }
 

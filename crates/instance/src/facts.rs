@@ -82,6 +82,27 @@ pub(crate) fn of(square: &Square, unit: &str) -> Vec<String> {
     facts
 }
 
+/// Every sentence on a list of drives, where a missing pair is nothing to speak of. O(n²).
+pub(crate) fn of_list(square: &Square, unit: &str, costs: bool) -> Vec<String> {
+    let drives = square.cells.iter().flatten().count();
+    let unit = if unit.is_empty() { String::new() } else { format!(", {unit}") };
+    let stops = plural(square.len(), "stop", "stops");
+    let mut facts = vec![format!("{stops}, {}{unit}.", plural(drives, "drive", "drives"))];
+    match Scaled::of(square) {
+        Some(scaled) if costs => {
+            facts.push(symmetry(square, &scaled));
+            facts.extend(odd_values(square, &scaled));
+        }
+        Some(scaled) => {
+            facts.push(symmetry(square, &scaled));
+            facts.push("The list gives no costs, so there is no c.".to_owned());
+        }
+        None => facts.push("The numbers are too long to be compared with each other.".to_owned()),
+    }
+    facts.extend(connection(square));
+    facts
+}
+
 fn symmetry(square: &Square, scaled: &Scaled) -> String {
     let n = scaled.n;
     let (mut differ, mut one_way) = (0, 0);

@@ -9,8 +9,14 @@ use crate::number::Number;
 pub enum Reader {
     /// A distance matrix.
     Matrix,
-    /// Points in the plane.
+    /// Points in the plane, or by latitude and longitude where a heading says so.
     Points,
+    /// Points by latitude and longitude.
+    Geographic,
+    /// A list of drives.
+    Arcs,
+    /// Tables copied from a spreadsheet.
+    Table,
     /// A TSPLIB file.
     Tsplib,
     /// Named blocks.
@@ -19,7 +25,15 @@ pub enum Reader {
 
 impl Reader {
     /// Every reader.
-    pub const ALL: [Self; 4] = [Self::Matrix, Self::Points, Self::Tsplib, Self::Blocks];
+    pub const ALL: [Self; 7] = [
+        Self::Matrix,
+        Self::Points,
+        Self::Geographic,
+        Self::Arcs,
+        Self::Table,
+        Self::Tsplib,
+        Self::Blocks,
+    ];
 
     /// The name by which scenarios choose it.
     #[must_use]
@@ -27,6 +41,9 @@ impl Reader {
         match self {
             Self::Matrix => "matrix",
             Self::Points => "points",
+            Self::Geographic => "points geographic",
+            Self::Arcs => "arcs",
+            Self::Table => "table",
             Self::Tsplib => "tsplib",
             Self::Blocks => "blocks",
         }
@@ -82,6 +99,8 @@ pub struct Instance {
     pub title: String,
     /// The unit of the distances ("minutes"); empty when the text does not name one.
     pub unit: String,
+    /// The units of tables by their names, where headings name them ("EUR").
+    pub units: BTreeMap<String, String>,
     /// The reader that read it.
     pub reader: Reader,
     /// Where the stops stand, when the text says so.
@@ -98,6 +117,7 @@ impl Instance {
         Self {
             title: String::new(),
             unit: String::new(),
+            units: BTreeMap::new(),
             reader,
             points: None,
             assumed: BTreeSet::new(),

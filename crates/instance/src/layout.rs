@@ -1,4 +1,5 @@
-//! Places of the stops on the map: the given points, or places computed from the distances by
+//! Places of the stops on the map: the given points (latitude and longitude by an equirectangular
+//! projection, see [`crate::geo`]), or places computed from the distances by
 //! classical scaling (Torgerson, Psychometrika 17, 1952).
 //!
 //! With D the symmetrised distances and J = I − 𝟙𝟙ᵀ/n, the two leading eigenvectors of
@@ -6,6 +7,7 @@
 //! power iteration from a fixed start with a fixed number of steps, on B + σI with σ making it
 //! positive semidefinite, so that every machine computes the same bits.
 
+use crate::geo::project;
 use crate::instance::Instance;
 use crate::number::Number;
 
@@ -23,7 +25,9 @@ pub struct Layout {
 #[must_use]
 pub fn layout(instance: &Instance) -> Layout {
     if let Some(points) = &instance.points {
-        return Layout { places: fit(&points.places), computed: false };
+        let places =
+            if points.geographic { project(&points.places) } else { points.places.clone() };
+        return Layout { places: fit(&places), computed: false };
     }
     let matrix = instance.matrix();
     if matrix.is_empty() {

@@ -8,26 +8,36 @@
 //! |---|---|
 //! | [`Reader::Matrix`] | a table of distances, whole or half, with or without labels |
 //! | [`Reader::Points`] | points in the plane: `label x y` or `x y` |
+//! | [`Reader::Geographic`] | points on the globe: `label latitude longitude` |
+//! | [`Reader::Arcs`] | a list of drives: `from to cost`, with as many cost columns as there are |
+//! | [`Reader::Table`] | tables with headings, copied from a spreadsheet |
 //! | [`Reader::Tsplib`] | a TSPLIB file (Reinelt, ORSA Journal on Computing 3, 1991) of type TSP or ATSP |
 //! | [`Reader::Blocks`] | named sets, tables and numbers under headings |
 //!
-//! The first three give a round trip: the stops `V`, the distances `c` over pairs of them, and by
-//! habit (see [`Instance::assumed`]) the drives `A`, the root `r` and, on symmetric data, the
-//! edges `E`. [`layout()`] gives each stop a place on the map.
+//! Matrices, points and TSPLIB files give a round trip: the stops `V`, the distances `c` over
+//! pairs of them, and by habit (see [`Instance::assumed`]) the drives `A`, the root `r` and, on
+//! symmetric data, the edges `E`. A list of drives gives `V`, `A` and a table for each column of
+//! costs, and by habit `r` and `s` (the first stop named), `t` (the last one) and, where every
+//! drive is the same both ways, `E`. Tables and blocks give what their headings name, and the same
+//! habits where that is a round trip. [`layout()`] gives each stop a place on the map.
 
+mod arcs;
 mod blocks;
 mod cells;
 mod complaint;
 mod facts;
 mod finish;
+mod geo;
 mod instance;
 mod layout;
 mod matrix;
+mod names;
 mod number;
 mod points;
 mod read;
 mod sniff;
 mod square;
+mod table;
 mod text;
 mod triangle;
 mod tsplib;

@@ -1,5 +1,6 @@
-//! Points in the plane: `label x y` or `x y` a line. The distance of two points is Euclidean,
-//! rounded half up to two decimals, exactly.
+//! Points: `label x y` or `x y` a line in the plane, `label latitude longitude` or `latitude
+//! longitude` on the globe. A plane distance is Euclidean, rounded half up to two decimals,
+//! exactly; for the others see [`crate::geo`].
 
 use std::collections::BTreeMap;
 
@@ -9,25 +10,43 @@ use dashu_ratio::RBig;
 use crate::cells::{Cell, Style, is_blank};
 use crate::complaint::{Complaints, excerpt, plural};
 use crate::finish::RoundTrip;
+use crate::geo;
 use crate::instance::Points;
 use crate::matrix::{Row, Table, table};
 use crate::number::{Number, parse};
 use crate::square::{Square, counted};
 
-const ACROSS: [&str; 6] = ["x", "east", "easting", "lon", "longitude", "lng"];
-const ALONG: [&str; 5] = ["y", "north", "northing", "lat", "latitude"];
+const ACROSS: [&str; 3] = ["x", "east", "easting"];
+const ALONG: [&str; 3] = ["y", "north", "northing"];
+const LONGITUDE: [&str; 6] = ["longitude", "long", "lon", "lng", "λ", "lambda"];
+const LATITUDE: [&str; 4] = ["latitude", "lat", "φ", "phi"];
 
-/// Whether a row names two columns of coordinates.
-pub(crate) fn is_heading(row: &[impl AsRef<str>]) -> bool {
-    heading(row).is_some()
+const PLANE_NOTE: &str = "The distance of two points is Euclidean, rounded to two decimals.";
+
+const DEGREES_MEND: &str = "Write decimal degrees, such as 48.2 or -16.37, south and west with a \
+    minus.";
+
+/// Two columns of coordinates that a heading names.
+#[derive(Clone, Copy, PartialEq, Eq)]
+pub(crate) struct Heading {
+    across: usize,
+    along: usize,
+    pub(crate) geographic: bool,
 }
 
-/// The columns of x and y, if a row names them.
-fn heading(row: &[impl AsRef<str>]) -> Option<(usize, usize)> {
+/// The columns of coordinates, if a row names them. A unit in brackets after a name is passed
+/// over.
+pub(crate) fn heading(row: &[impl AsRef<str>]) -> Option<Heading> {
     let find = |words: &[&str]| {
-        row.iter().position(|cell| words.iter().any(|w| cell.as_ref().eq_ignore_ascii_case(w)))
+        row.iter().position(|cell| {
+            let name = cell.as_ref().split(['(', '[', '.', '°']).next().unwrap_or("").trim();
+            words.contains(&name.to_lowercase().as_str())
+        })
     };
-    Some((find(&ACROSS)?, find(&ALONG)?))
+    let pair = |x: &[&str], y: &[&str], geographic| {
+        Some(Heading { across: find(x)?, along: find(y)?, geographic })
+    };
+    pair(&ACROSS, &ALONG, false).or_else(|| pair(&LONGITUDE, &LATITUDE, true))
 }
 
 /// Which cells of a row hold the label and the coordinates.
@@ -37,18 +56,19 @@ struct Columns {
     x: usize,
     y: usize,
     width: usize,
+    geographic: bool,
 }
 
-/// Reads points. O(n²).
-pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
+/// Reads points; as latitude and longitude when `geographic` or when the heading says so. O(n²).
+pub(crate) fn read(text: &str, geographic: bool, sink: &mut Complaints) -> Option<RoundTrip> {
     let Table { title, style, rows } = table(text, sink)?;
-    let (columns, body) = columns(&rows, sink);
+    let (columns, body) = columns(&rows, geographic);
     let mut labels = Vec::new();
-    let mut places = Vec::new();
+    let mut points = Vec::new();
     for row in body {
         if let Some((label, place)) = point(row, columns, style, sink) {
             labels.push(label);
-            places.push(place);
+            points.push(place);
         }
     }
     if columns.label.is_some() {
@@ -64,48 +84,58 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
     }
     let labels = match columns.label {
         Some(_) => labels.iter().map(|cell| cell.text.to_string()).collect(),
-        None => counted(places.len()),
+        None => counted(points.len()),
     };
-    let square = square(labels, &places);
     let float = |number: &Number| number.to_f64().value() + 0.0;
-    let places = places.iter().map(|(x, y)| (float(x), float(y))).collect();
+    let places: Vec<_> = points.iter().map(|(x, y)| (float(x), float(y))).collect();
+    let (square, what) = if columns.geographic {
+        (square(labels, &places, |from, to| geo::distance(*from, *to)), "points on the globe")
+    } else {
+        (square(labels, &points, distance), "points in the plane")
+    };
+    let separator = style.separator.name();
     Some(RoundTrip {
         title,
-        unit: String::new(),
+        unit: if columns.geographic { "km".to_owned() } else { String::new() },
         square,
-        points: Some(Points { places, geographic: false }),
-        notes: vec!["The distance of two points is Euclidean, rounded to two decimals.".to_owned()],
-        how: format!("points in the plane, cells separated by {}", style.separator.name()),
+        points: Some(Points { places, geographic: columns.geographic }),
+        notes: notes(columns, &rows, body.len()),
+        how: format!("{what}, cells separated by {separator}"),
     })
 }
 
+/// What is said of the columns and the distances.
+fn notes(columns: Columns, rows: &[Row], body: usize) -> Vec<String> {
+    let note = if columns.geographic { geo::NOTE } else { PLANE_NOTE };
+    let mut notes = vec![note.to_owned()];
+    if body < rows.len() {
+        let used = |place| [Some(columns.x), Some(columns.y), columns.label].contains(&Some(place));
+        let unread = rows[0].cells.iter().enumerate().filter(|(place, _)| !used(*place));
+        notes.extend(unread.map(|(_, cell)| {
+            format!("The column `{}` was not read: points have a label and a place.", cell.text)
+        }));
+    } else if columns.geographic {
+        notes.push("Without a heading the first number is the latitude.".to_owned());
+    }
+    notes
+}
+
 /// The columns, from a heading where there is one, and the rows below it.
-fn columns<'r, 'a>(rows: &'r [Row<'a>], sink: &mut Complaints) -> (Columns, &'r [Row<'a>]) {
+fn columns<'r, 'a>(rows: &'r [Row<'a>], geographic: bool) -> (Columns, &'r [Row<'a>]) {
     let width = |row: &Row| row.cells.len();
     let texts = |row: &Row| row.cells.iter().map(|c| c.text.to_string()).collect::<Vec<_>>();
-    let Some(first) = rows.first() else {
-        return (Columns { label: None, x: 0, y: 1, width: 2 }, rows);
-    };
-    if let Some((x, y)) = heading(&texts(first)) {
-        for cell in &first.cells {
-            refuse_degrees(cell, sink);
-        }
+    let first = rows.first();
+    if let Some((first, found)) = first.and_then(|row| Some((row, heading(&texts(row))?))) {
+        let (x, y) = (found.across, found.along);
         let label = (0..width(first)).find(|&column| column != x && column != y);
-        return (Columns { label, x, y, width: width(first) }, &rows[1..]);
+        let geographic = geographic || found.geographic;
+        return (Columns { label, x, y, width: width(first), geographic }, &rows[1..]);
     }
     let longest = rows.iter().map(width).filter(|w| matches!(w, 2 | 3)).max().unwrap_or(3);
     let label = (longest == 3).then_some(0);
-    let columns = Columns { label, x: longest - 2, y: longest - 1, width: longest };
-    (columns, rows)
-}
-
-fn refuse_degrees(cell: &Cell, sink: &mut Complaints) {
-    let name = cell.text.to_ascii_lowercase();
-    if ["lon", "lng", "lat", "longitude", "latitude"].contains(&name.as_str()) {
-        let message = format!("`{}` is in degrees, which are no plane distances", cell.text);
-        let mend = "Give x and y in a plane grid, or a TSPLIB file with EDGE_WEIGHT_TYPE: GEO.";
-        sink.error(cell.span.clone(), "degrees", message, mend);
-    }
+    let (first, second) = (longest - 2, longest - 1);
+    let (x, y) = if geographic { (second, first) } else { (first, second) };
+    (Columns { label, x, y, width: longest, geographic }, rows)
 }
 
 fn point<'r, 'a>(
@@ -125,16 +155,50 @@ fn point<'r, 'a>(
         sink.error(start..row.end, "row-length", message, mend);
         return None;
     }
-    let x = coordinate(&row.cells[columns.x], style, sink);
-    let y = coordinate(&row.cells[columns.y], style, sink);
-    Some((&row.cells[columns.label.unwrap_or(0)], (x?, y?)))
+    let (x, y) = (&row.cells[columns.x], &row.cells[columns.y]);
+    let (across, along) =
+        (coordinate(x, columns, style, sink), coordinate(y, columns, style, sink));
+    let (across, along) = (across?, along?);
+    if columns.geographic {
+        let longitude = is_within(x, ("longitude", 180), &across, sink);
+        if !is_within(y, ("latitude", 90), &along, sink) || !longitude {
+            return None;
+        }
+    }
+    Some((&row.cells[columns.label.unwrap_or(0)], (across, along)))
 }
 
-fn coordinate(cell: &Cell, style: Style, sink: &mut Complaints) -> Option<Number> {
+/// Whether degrees are within their limits; complains if not.
+fn is_within(
+    cell: &Cell,
+    (what, most): (&str, i32),
+    degrees: &Number,
+    sink: &mut Complaints,
+) -> bool {
+    let (most, least) = (RBig::from(most), RBig::from(-most));
+    let within = *degrees >= least && *degrees <= most;
+    if !within && sink.is_full() {
+        sink.count_error();
+    } else if !within {
+        let text = excerpt(&cell.text);
+        let message = format!("`{text}` is no {what}: it lies between {least} and {most} degrees");
+        let mend = "Write decimal degrees, south and west with a minus; perhaps latitude and \
+            longitude have changed places.";
+        sink.error(cell.span.clone(), "degrees", message, mend);
+    }
+    within
+}
+
+fn coordinate(
+    cell: &Cell,
+    columns: Columns,
+    style: Style,
+    sink: &mut Complaints,
+) -> Option<Number> {
     match parse(&cell.text, style.decimal_comma) {
         Ok(number) => Some(number),
         Err(_) if is_blank(&cell.text) => {
-            let mend = "Every stop needs x and y.";
+            let mend = "Every stop needs both coordinates.";
             sink.error(cell.span.clone(), "blank", "a coordinate is missing here", mend);
             None
         }
@@ -144,7 +208,8 @@ fn coordinate(cell: &Cell, style: Style, sink: &mut Complaints) -> Option<Number
         }
         Err(why) => {
             let message = format!("`{}` is not a number", excerpt(&cell.text));
-            sink.error(cell.span.clone(), "not-a-number", message, why.mend());
+            let mend = if columns.geographic { DEGREES_MEND } else { why.mend() };
+            sink.error(cell.span.clone(), "not-a-number", message, mend);
             None
         }
     }
@@ -163,7 +228,8 @@ fn check_labels(labels: &[&Cell], sink: &mut Complaints) {
     }
 }
 
-fn square(labels: Vec<String>, places: &[(Number, Number)]) -> Square {
+/// The square of a symmetric distance of points.
+fn square<P>(labels: Vec<String>, places: &[P], distance: impl Fn(&P, &P) -> Number) -> Square {
     let mut square = Square::empty(labels);
     for (i, from) in places.iter().enumerate() {
         for (j, to) in places.iter().enumerate().skip(i + 1) {
@@ -235,9 +301,59 @@ mod tests {
     }
 
     #[test]
-    fn degrees_are_refused() {
-        let reading = read("stop lat lon\na 50 10\nb 51 11", None);
-        assert_eq!(reading.complaints[0].code, "degrees");
+    fn latitude_and_longitude() {
+        for (text, reader) in [
+            ("stop lat lon\na 0 0\nb 0 1\nc 1 0", None),
+            ("stop;Longitude (°);Latitude (°)\na;0;0\nb;1,0;0\nc;0;1,0", None),
+            ("Lat.,Long.,name\n0,0,a\n0,1,b\n1,0,c", None),
+            ("a 0 0\nb 0 1\nc 1 0", Some(Reader::Geographic)),
+        ] {
+            let reading = read(text, reader);
+            assert_eq!(
+                (reading.reader, reading.complaints.len()),
+                (Reader::Geographic, 0),
+                "{text}"
+            );
+            let instance = reading.instance.unwrap();
+            assert_eq!(
+                (instance.unit.as_str(), instance.stops().join(" ")),
+                ("km", "a b c".into())
+            );
+            let points = instance.points.as_ref().unwrap();
+            assert!(points.geographic);
+            assert_eq!(points.places, [(0.0, 0.0), (1.0, 0.0), (0.0, 1.0)]);
+            let matrix: Vec<_> = instance.matrix().into_iter().flatten().map(number_text).collect();
+            // By Pythagoras on the sphere, cos d = cos² 1°: d = 1.414178° = 157.2496 km.
+            assert_eq!(matrix[..2], ["111.195", "111.195"]);
+            assert_eq!(matrix[3], "157.25");
+            assert!(reading.facts.contains(&geo::NOTE.to_owned()));
+        }
+    }
+
+    #[test]
+    fn degrees_have_limits() {
+        let text = "stop lat lon\na 90 -180\nb 90.01 10\nc 5 181\nd 48°12' 16\ne -91 -181";
+        let reading = read(text, None);
+        assert!(reading.instance.is_none());
+        let found: Vec<_> = reading.complaints.iter().map(|c| (c.line, c.column, c.code)).collect();
+        assert_eq!(
+            found,
+            [
+                (3, 3, "degrees"),
+                (4, 5, "degrees"),
+                (5, 3, "not-a-number"),
+                (6, 3, "degrees"),
+                (6, 7, "degrees")
+            ]
+        );
+        assert_eq!(reading.complaints[2].mend, DEGREES_MEND);
+    }
+
+    #[test]
+    fn columns_that_are_not_read_are_said() {
+        let facts = read("stop x y demand\na 0 0 3\nb 3 4 5", None).facts;
+        let said = "The column `demand` was not read: points have a label and a place.";
+        assert!(facts.contains(&said.to_owned()), "{facts:?}");
     }
 
     proptest! {

@@ -4,7 +4,7 @@ use crate::complaint::{Complaint, Complaints, grouped};
 use crate::finish::finish;
 use crate::instance::{Instance, Reader};
 use crate::sniff::guess;
-use crate::{MAX_TEXT, blocks, matrix, points, tsplib};
+use crate::{MAX_TEXT, arcs, blocks, matrix, points, table, tsplib};
 
 /// What was read.
 #[derive(Debug, Clone, PartialEq)]
@@ -35,7 +35,10 @@ pub fn read(text: &str, reader: Option<Reader>) -> Reading {
     }
     let found = match chosen {
         Reader::Matrix => matrix::read(text, &mut sink).map(|trip| finish(chosen, trip)),
-        Reader::Points => points::read(text, &mut sink).map(|trip| finish(chosen, trip)),
+        Reader::Points => points::read(text, false, &mut sink).map(|trip| finish(chosen, trip)),
+        Reader::Geographic => points::read(text, true, &mut sink).map(|trip| finish(chosen, trip)),
+        Reader::Arcs => arcs::read(text, &mut sink),
+        Reader::Table => table::read(text, &mut sink),
         Reader::Tsplib => tsplib::read(text, &mut sink).map(|trip| finish(chosen, trip)),
         Reader::Blocks => blocks::read(text, &mut sink),
     };
@@ -60,6 +63,9 @@ fn taken_for(reader: Reader) -> &'static str {
     match reader {
         Reader::Matrix => "a distance matrix (`matrix`)",
         Reader::Points => "points in the plane (`points`)",
+        Reader::Geographic => "points by latitude and longitude (`points geographic`)",
+        Reader::Arcs => "a list of drives (`arcs`)",
+        Reader::Table => "tables with headings (`table`)",
         Reader::Tsplib => "a TSPLIB file (`tsplib`)",
         Reader::Blocks => "named blocks (`blocks`)",
     }

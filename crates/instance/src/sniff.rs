@@ -1,22 +1,28 @@
 //! Which reader a text looks made for.
 
+use std::collections::BTreeSet;
+
 use crate::blocks::{is_by_heading, is_equation};
-use crate::cells::{Style, is_word, split, style};
+use crate::cells::{Separator, Style, is_word, split, style};
 use crate::instance::Reader;
+use crate::matrix::is_title;
 use crate::number::parse;
 use crate::text::{Line, lines};
-use crate::{points, tsplib};
+use crate::{arcs, points, table, tsplib};
 
 /// Lines looked at; the rest of a long text is much the same.
 const LOOKED_AT: usize = 400;
 
-/// Guesses the reader: TSPLIB by its keywords, blocks by their headings, points by two numbers a
-/// row or a heading of coordinates, else a matrix. O(lines looked at).
+/// Guesses the reader: TSPLIB by its keywords, blocks by their headings, points by a heading of
+/// coordinates, drives by their ends or by a line on directions, tables by headings that are no
+/// labels of rows, points by two numbers a row, else a matrix. O(length).
 pub(crate) fn guess(text: &str) -> Reader {
-    let found: Vec<Line> = lines(text)
-        .into_iter()
+    let all = lines(text);
+    let found: Vec<Line> = all
+        .iter()
         .filter(|line| !line.is_blank() && !line.is_remark())
         .take(LOOKED_AT)
+        .copied()
         .collect();
     if found.iter().any(|line| tsplib::is_telling(line.text)) {
         return Reader::Tsplib;
@@ -24,20 +30,73 @@ pub(crate) fn guess(text: &str) -> Reader {
     if found.iter().any(|line| is_by_heading(line.text) || is_equation(line.text)) {
         return Reader::Blocks;
     }
-    if are_points(&found) { Reader::Points } else { Reader::Matrix }
+    // A title stands before a blank line.
+    let titled = all.iter().position(|line| !line.is_blank() && !line.is_remark());
+    let found = &found[usize::from(titled.is_some_and(|first| is_title(&all[first..])))..];
+    if found.first().is_some_and(|line| arcs::direction(line.text).is_some()) {
+        return Reader::Arcs;
+    }
+    guess_by_rows(text, found)
 }
 
-fn are_points(found: &[Line]) -> bool {
+fn guess_by_rows(text: &str, found: &[Line]) -> Reader {
     let style = style(found);
     let rows: Vec<Vec<String>> = found
         .iter()
         .map(|line| split(line, style.separator).into_iter().map(|c| c.text.into()).collect())
         .collect();
-    let Some(first) = rows.first() else { return false };
-    if points::is_heading(first) {
-        // A matrix may have stops called x and y: its rows are called so too.
-        return !rows[1..].iter().any(|row| row.first().is_some_and(|label| first.contains(label)));
+    let Some((first, body)) = rows.split_first() else { return Reader::Matrix };
+    // A matrix may have stops called x and y, or from and to: its rows are called so too.
+    let common = body.iter().any(|row| row.first().is_some_and(|label| first.contains(label)));
+    match points::heading(first) {
+        Some(heading) if !common && heading.geographic => return Reader::Geographic,
+        Some(_) if !common => return Reader::Points,
+        _ => {}
     }
+    if are_arcs(&filled(&rows, style), common, style) {
+        Reader::Arcs
+    } else if table::is_likely(&text[..found.last().map_or(0, Line::end)]) {
+        Reader::Table
+    } else if are_points(&rows, style) {
+        Reader::Points
+    } else {
+        Reader::Matrix
+    }
+}
+
+/// The rows without empty cells at their ends.
+fn filled(rows: &[Vec<String>], style: Style) -> Vec<Vec<String>> {
+    let mut rows = rows.to_vec();
+    for row in rows.iter_mut().filter(|_| style.separator != Separator::Space) {
+        while row.last().is_some_and(String::is_empty) {
+            row.pop();
+        }
+    }
+    rows
+}
+
+/// A headline that names ends, or two words and numbers a row. Below a headline that names no
+/// ends, the two columns of words must have a label in common: else they are two sets.
+fn are_arcs(rows: &[Vec<String>], common: bool, style: Style) -> bool {
+    let Some((first, body)) = rows.split_first() else { return false };
+    let square = body.iter().all(|row| row.len() == body.len());
+    let ends = |pair: &[String]| {
+        arcs::are_ends(&pair[0], &pair[1]) && (!square || pair[0].chars().count() > 1)
+    };
+    if !common && !body.is_empty() && first.windows(2).any(ends) {
+        return true;
+    }
+    let headed = first.len() > 2 && first.iter().all(|cell| is_word(cell, style.decimal_comma));
+    if !headed {
+        return arcs::are_drives(rows, style);
+    }
+    let starts: BTreeSet<&String> = body.iter().filter_map(|row| row.first()).collect();
+    let meet = body.iter().filter_map(|row| row.get(1)).any(|label| starts.contains(label));
+    meet && arcs::are_drives(body, style) && body.iter().all(|row| row.len() > 2)
+}
+
+fn are_points(rows: &[Vec<String>], style: Style) -> bool {
+    let Some(first) = rows.first() else { return false };
     let body = &rows[usize::from(!is_point(first, style))..];
     let above = |row: &Vec<String>| row.first().is_some_and(|label| first.contains(label));
     let headed = body.len() < rows.len() && (first.len() > 3 || body.iter().any(above));
@@ -77,6 +136,29 @@ mod tests {
             ("a b c\na 1 2\nb 1 2\nc 1 2", Reader::Matrix),
             (";x;y\nx;0;1\ny;1;0", Reader::Matrix),
             ("", Reader::Matrix),
+            ("stop lat lon\na 1 2\nb 3 4", Reader::Geographic),
+            ("from,to,minutes\n1,2,5\n2,3,7\n3,1,4", Reader::Arcs),
+            ("Streets\n\na b 5\nb c 7", Reader::Arcs),
+            ("undirected\n1 2 5\n2 3 7\n3 1 4", Reader::Arcs),
+            ("1 2 5\n2 3 7\n3 1 4", Reader::Matrix),
+            ("i j k\n0 1 2\n1 0 3\n2 3 0", Reader::Matrix),
+            ("i j c\n1 2 5\n2 3 7\n3 1 4\n1 3 9", Reader::Arcs),
+            ("from to\nfrom 0 1\nto 1 0", Reader::Matrix),
+            ("a b", Reader::Matrix),
+            ("one end minutes\na b 3\nb c 4", Reader::Arcs),
+            ("client depot cost\na p 3\nb q 4", Reader::Table),
+            ("client demand cost\na 3 4\nb 5 6\nc 7 8", Reader::Table),
+            (
+                "period demand setup holding\n1 10 50 2\n2 20 50 2\n3 30 60 2\n4 5 60 2",
+                Reader::Table,
+            ),
+            ("a b c d\n0 10 50 2\n2 0 50 2\n3 30 0 2\n4 5 60 0", Reader::Matrix),
+            ("c\tD1\tD2\nA\t1\t2\nB\t3\t4\nC\t5\t6", Reader::Table),
+            ("client\\period;1;2;3\nA;1;2;3\nB;3;4;5", Reader::Table),
+            ("c 1 2 3\nA 4 5 6\nB 7 8 9", Reader::Matrix),
+            ("c 1 2 3\nA 4 5 6", Reader::Table),
+            ("client demand\na 3\nb 4\n\nclient depot cost\na p 3\nb q 4", Reader::Table),
+            ("Round, in minutes\n\n;a;b\na;0;1\nb;2;0", Reader::Matrix),
         ] {
             assert_eq!(guess(text), reader, "{text}");
         }

@@ -72,7 +72,7 @@ pub(crate) fn table<'a>(text: &'a str, sink: &mut Complaints) -> Option<Table<'a
     Some(Table { title, style, rows })
 }
 
-fn is_title(rest: &[Line]) -> bool {
+pub(crate) fn is_title(rest: &[Line]) -> bool {
     let followed_by_blank = rest.get(1).is_some_and(Line::is_blank);
     let words = rest[0].text.split_whitespace().all(|word| parse(word, false).is_err());
     followed_by_blank && words && !rest[0].text.contains([';', '\t'])
@@ -89,8 +89,7 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
     }
     if let Some(first) = drive_list(&rows, style) {
         let message = "this looks like a list of drives, a line each, and not like a table";
-        let mend = "Read it as blocks: put a line `c by i, j` above it and, before that, a line \
-            `V`, a line with all stops and a blank line.";
+        let mend = "Read it with the reader `arcs`, or leave the reader to be guessed.";
         sink.error(first, "drive-list", message, mend);
         return None;
     }

@@ -79,10 +79,10 @@ fn numbers_may_be_labels() {
 
 #[test]
 fn a_list_of_drives_is_told_from_a_table() {
-    let reading = read("A,B,5\nA,C,7\nB,C,9\n", None);
-    assert_eq!(places(&reading.complaints), [(1, 1, "drive-list")]);
-    let mended = read("V\nA B C\n\nc by i, j\nA,B,5\nA,C,7\nB,C,9\n", None);
-    assert_eq!((mended.reader, mended.complaints.len()), (Reader::Blocks, 0));
+    let text = "A,B,5\nA,C,7\nB,C,9\n";
+    assert_eq!(places(&matrix(text).complaints), [(1, 1, "drive-list")]);
+    let mended = read(text, None);
+    assert_eq!((mended.reader, mended.instance.is_some()), (Reader::Arcs, true));
 }
 
 #[test]

@@ -116,7 +116,7 @@ fn models_have_the_stated_size() {
     });
 }
 
-/// Only data that are 0 may make a row idle, and complete data leave no drive one-way.
+/// But one: complete data leave no drive one-way.
 #[test]
 fn models_come_without_warnings() {
     on_instances(|entry, class, instance| {

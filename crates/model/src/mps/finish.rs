@@ -16,9 +16,6 @@ pub(super) fn model(
     traps: &mut Traps,
     sink: &mut Complaints<'_>,
 ) -> Option<Model> {
-    if !draft.objective {
-        traps.meet(Trap::NoObjective, 0..0);
-    }
     for row in &draft.rows {
         if sides(row).is_none() {
             sink.error(row.span.clone(), || {
@@ -29,6 +26,9 @@ pub(super) fn model(
     }
     if sink.errors() > 0 {
         return None;
+    }
+    if !draft.objective {
+        traps.meet(Trap::NoObjective, 0..0);
     }
     let built = build(draft, traps);
     if let Err(error) = &built {

@@ -29,7 +29,7 @@
 //!
 //! Names of the form `x[Ash,Birch]` or `x(Ash,Birch)` become a variable (or a family) and an
 //! index tuple, columns and rows of one variable or family being brought together; any other
-//! name is a variable or a family without index. [`write`] writes names in the first form.
+//! name is a variable or a family without index. [`write()`] writes names in the first form.
 
 mod bounds;
 mod complaint;

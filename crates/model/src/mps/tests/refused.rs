@@ -82,6 +82,7 @@ fn too_much_is_refused() {
     let many = " x c one\n".repeat(500);
     let complaints = refused(&format!("ROWS\n N c\nCOLUMNS\n{many}ENDATA"));
     assert_eq!(complaints.len(), 201);
+    assert!(complaints.iter().all(|c| c.severity == Severity::Error));
     assert_eq!(complaints[200].message, "300 further places could not be read");
 }
 

@@ -249,3 +249,61 @@ fn a_small_family_over_subsets_can_be_written() {
     assert_eq!(model.row_count(), 10);
     assert_eq!(model.families()[2].state, FamilyState::Out);
 }
+
+/// Every shipped text reads and checks without a word, and prints back to the same tree.
+#[test]
+fn every_shipped_text_reads_checks_and_prints() {
+    let root = format!("{}/../catalogue/formulations", env!("CARGO_MANIFEST_DIR"));
+    let mut seen = 0;
+    for family in std::fs::read_dir(root).unwrap() {
+        for file in std::fs::read_dir(family.unwrap().path()).unwrap() {
+            let path = file.unwrap().path();
+            if path.extension().is_none_or(|e| e != "txt") {
+                continue;
+            }
+            let text = std::fs::read_to_string(&path).unwrap();
+            let parsed = hullward_notation::parse(&text);
+            let (checked, found) = hullward_notation::check(&parsed.tree);
+            let all: Vec<_> = parsed.diagnostics.into_iter().chain(found).collect();
+            assert!(all.is_empty(), "{}\n{}", path.display(), common::shown(&text, &all));
+            assert!(checked.is_sound());
+            let printed = hullward_notation::print(&parsed.tree);
+            assert_eq!(hullward_notation::parse(&printed).tree, parsed.tree, "{printed}");
+            seen += 1;
+        }
+    }
+    assert!(seen >= 7, "{seen}");
+}
+
+/// Lot sizing on three periods: the rows of the (l,S) family and of the shortest-path form.
+#[test]
+fn shipped_lot_sizing_forms() {
+    let file = |name: &str| {
+        let path =
+            format!("{}/../catalogue/formulations/lot/{name}.txt", env!("CARGO_MANIFEST_DIR"));
+        std::fs::read_to_string(path).unwrap()
+    };
+    let mut instance = instance::Instance::new(instance::Reader::Blocks);
+    instance.set("T", instance::Datum::Integers(vec![1, 2, 3]));
+    for (name, values) in [("d", [4, 0, 5]), ("f", [9, 9, 9]), ("p", [1, 1, 1]), ("h", [1, 1, 1])] {
+        let cells = values
+            .iter()
+            .enumerate()
+            .map(|(t, &v)| (vec![(t + 1).to_string()], model::Number::from(v)));
+        instance.set(name, instance::Datum::Table { arity: 1, cells: cells.collect() });
+    }
+    let l_s = made(&file("l-s"), &instance);
+    assert_eq!(l_s.subset_families().len(), 3);
+    assert_eq!((l_s.row_count(), l_s.columns().len()), (6, 10));
+    let all: BTreeSet<String> = members(&l_s, 1).iter().map(|r| exact_row_text(&l_s, r)).collect();
+    // D_{1,2} = 4, D_{2,2} = 0
+    let wanted = ["4 y[1] + x[2] ≥ 4", "4 y[1] ≥ 4", "x[1] + x[2] ≥ 4", "x[1] ≥ 4"];
+    assert_eq!(all, wanted.into_iter().map(str::to_owned).collect());
+    let path = made(&file("shortest-path-form"), &instance);
+    assert_eq!((path.row_count(), path.columns().len()), (12, 16));
+    assert_eq!(
+        rows_of(&path, "set-up")[1],
+        "−y[2] + z[2, 3] ≤ 0",
+        "the step over period 2 makes nothing"
+    );
+}

@@ -87,10 +87,15 @@ impl RoundTrip {
         let mut builder = ModelBuilder::new("", Sense::Minimise);
         let stops: Vec<LabelId> =
             self.stops.iter().map(|&stop| builder.label(model.labels().name(stop))).collect();
-        let free = ColumnSpec { lower: None, upper: None, cost: Number::ZERO, integer: false };
+        let arc = ColumnSpec {
+            lower: Some(Number::ZERO),
+            upper: None,
+            cost: Number::ZERO,
+            integer: false,
+        };
         let mut terms = Vec::with_capacity(self.arcs.len());
         for &(tail, head, _) in &self.arcs {
-            let column = builder.column(&[stops[tail], stops[head]], &free).ok()?;
+            let column = builder.column(&[stops[tail], stops[head]], &arc).ok()?;
             let scope = Scope::Leaving(stops[tail], stops[head]);
             terms.push(SubsetTerm { column, coefficient: Number::ONE, scope });
         }
@@ -213,5 +218,13 @@ mod tests {
         let found = separator.take();
         let apart: BTreeSet<LabelId> = trip.stops[2..].iter().copied().collect();
         assert!(found.iter().any(|f| trip.stops_of(&f.subset) == apart && f.violation == 1.0));
+    }
+
+    #[test]
+    fn more_stops_than_can_be_listed_are_separated_by_cuts() {
+        let costs = Random(3).costs(16, 30);
+        let model = round_trip(&costs, Form::Labels, Sense::Minimise);
+        let separator = RoundTrip::find(&model).unwrap().separator(&model).unwrap();
+        assert_eq!(separator.exactness(), Some(separate::Exactness::Exact));
     }
 }

@@ -137,7 +137,7 @@ fn Detail(props: &DetailProps) -> Html {
                 { violated(&detail.violated, *set, &show) }
                 { ray(detail) }
             </div>
-            if !report.stops.is_empty() {
+            if !report.stops.is_empty() && !detail.values.is_empty() {
                 <figure class="drawing">
                     <Map
                         report={report.clone()} arcs={(*arcs).clone()} set={tint} column={*column}
@@ -146,10 +146,12 @@ fn Detail(props: &DetailProps) -> Html {
                     <figcaption class="soft">{ "Width is the value; dashed where fractional. A drive keeps to the right of its way." }</figcaption>
                 </figure>
             }
+            if !detail.values.is_empty() {
             <Values
                 detail={detail.clone()} rival={props.rival.clone()} unit={report.unit.clone()}
                 column={*column} {choose}
             />
+            }
         </div>
     }
 }

@@ -124,7 +124,7 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<S
         let mend = "Write a name, rows below it, and a blank line after them.";
         sink.error(0..0, "nothing-to-read", "there is no block", mend);
     }
-    let mut facts = describe_all(&mut instance);
+    let mut facts = describe_all(&mut instance, true);
     facts.push("Read as named blocks; every line was read.".to_owned());
     Some((instance, facts))
 }
@@ -242,11 +242,12 @@ fn number(cell: &Cell, style: Style, sink: &mut Complaints) -> Option<Number> {
     }
 }
 
-/// Says what each block is; where `V` and `c` make a round trip, adds the habits and what is
+/// Says what each datum is (tables only where `tables`); where `V` and `c` make a round trip, adds the habits and what is
 /// said of round trips.
-pub(crate) fn describe_all(instance: &mut Instance) -> Vec<String> {
+pub(crate) fn describe_all(instance: &mut Instance, tables: bool) -> Vec<String> {
+    let shown = |(_, datum): &(&str, &Datum)| tables || !matches!(datum, Datum::Table { .. });
     let mut sentences: Vec<String> =
-        instance.data().map(|(name, datum)| describe(name, datum)).collect();
+        instance.data().filter(shown).map(|(name, datum)| describe(name, datum)).collect();
     if let Some(square) = square(instance) {
         let trip = Instance::round_trip(square.labels.clone(), &square.cells);
         for name in &trip.assumed {

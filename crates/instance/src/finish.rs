@@ -1,5 +1,6 @@
 //! From the square of a round trip to the instance and what is said of it.
 
+use crate::extra::Tables;
 use crate::facts;
 use crate::instance::{Instance, Points, Reader};
 use crate::square::Square;
@@ -10,6 +11,8 @@ pub(crate) struct RoundTrip {
     pub(crate) unit: String,
     pub(crate) square: Square,
     pub(crate) points: Option<Points>,
+    /// What the text gives besides.
+    pub(crate) tables: Tables,
     /// Sentences of the reader's own.
     pub(crate) notes: Vec<String>,
     /// How the text was read: "a matrix with labels, cells separated by tabs".
@@ -30,5 +33,11 @@ pub(crate) fn finish(reader: Reader, trip: RoundTrip) -> (Instance, Vec<String>)
     instance.unit = trip.unit;
     instance.reader = reader;
     instance.points = trip.points;
+    for (name, table) in trip.tables {
+        if !name.unit.is_empty() {
+            instance.units.insert(name.text.clone(), name.unit);
+        }
+        instance.set(&name.text, table);
+    }
     (instance, sentences)
 }

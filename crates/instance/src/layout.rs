@@ -218,6 +218,16 @@ mod tests {
     }
 
     #[test]
+    fn degrees_are_projected() {
+        let text = "stop lat lon\na 60 0\nb 60 4\nc 61 0";
+        let layout = layout(&read(text, None).instance.unwrap());
+        let ratio = distance(layout.places[0], layout.places[1])
+            / distance(layout.places[0], layout.places[2]);
+        // cos 60.5° = 0.492424.
+        assert!((ratio - 4.0 * 0.492_424).abs() < 1e-5 && !layout.computed, "{ratio}");
+    }
+
+    #[test]
     fn the_aspect_ratio_is_kept() {
         assert_eq!(fit(&[(0.0, 0.0), (4.0, 2.0)]), [(0.0, 0.25), (1.0, 0.75)]);
         assert_eq!(fit(&[(3.0, 3.0)]), [(0.5, 0.5)]);

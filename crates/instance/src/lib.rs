@@ -25,6 +25,7 @@ mod arcs;
 mod blocks;
 mod cells;
 mod complaint;
+mod extra;
 mod facts;
 mod finish;
 mod geo;

@@ -48,7 +48,9 @@ fn unit_apart(heading: &str) -> (&str, &str) {
         }
     }
     match heading.rsplit_once(" in ") {
-        Some((body, unit)) if is_unit(unit.trim()) => (body, unit.trim()),
+        Some((body, unit)) if unit.split_whitespace().next().is_some_and(is_unit) => {
+            (body, unit.trim())
+        }
         _ => (heading, ""),
     }
 }
@@ -65,6 +67,7 @@ mod tests {
             ("cost (EUR)", "cost", "EUR"),
             ("Setup cost [€/lot]", "SetupCost", "€/lot"),
             ("holding in EUR", "holding", "EUR"),
+            ("cost in EUR per day", "cost", "EUR per day"),
             ("time in hand", "timeInHand", ""),
             ("2nd_shift", "ndShift", ""),
             ("2 shift", "shift", ""),

@@ -1,6 +1,6 @@
 //! Points: `label x y` or `x y` a line in the plane, `label latitude longitude` or `latitude
 //! longitude` on the globe. A plane distance is Euclidean, rounded half up to two decimals,
-//! exactly; for the others see [`crate::geo`].
+//! exactly; for the others see [`crate::geo`]. Further columns below headings are tables.
 
 use std::collections::BTreeMap;
 
@@ -9,6 +9,7 @@ use dashu_ratio::RBig;
 
 use crate::cells::{Cell, Style, is_blank};
 use crate::complaint::{Complaints, excerpt, plural};
+use crate::extra;
 use crate::finish::RoundTrip;
 use crate::geo;
 use crate::instance::Points;
@@ -59,6 +60,13 @@ struct Columns {
     geographic: bool,
 }
 
+impl Columns {
+    fn unused(&self) -> Vec<usize> {
+        let used = [Some(self.x), Some(self.y), self.label];
+        (0..self.width).filter(|place| !used.contains(&Some(*place))).collect()
+    }
+}
+
 /// Reads points; as latitude and longitude when `geographic` or when the heading says so. O(n²).
 pub(crate) fn read(text: &str, geographic: bool, sink: &mut Complaints) -> Option<RoundTrip> {
     let Table { title, style, rows } = table(text, sink)?;
@@ -86,6 +94,10 @@ pub(crate) fn read(text: &str, geographic: bool, sink: &mut Complaints) -> Optio
         Some(_) => labels.iter().map(|cell| cell.text.to_string()).collect(),
         None => counted(points.len()),
     };
+    let mut notes = notes(columns, body.len() < rows.len());
+    let unused = columns.unused();
+    let further = if body.len() < rows.len() { &unused[..] } else { &[] };
+    let tables = extra::tables((&rows[0], body), (&labels, further), style, &mut notes, sink);
     let float = |number: &Number| number.to_f64().value() + 0.0;
     let places: Vec<_> = points.iter().map(|(x, y)| (float(x), float(y))).collect();
     let (square, what) = if columns.geographic {
@@ -99,22 +111,17 @@ pub(crate) fn read(text: &str, geographic: bool, sink: &mut Complaints) -> Optio
         unit: if columns.geographic { "km".to_owned() } else { String::new() },
         square,
         points: Some(Points { places, geographic: columns.geographic }),
-        notes: notes(columns, &rows, body.len()),
+        tables,
+        notes,
         how: format!("{what}, cells separated by {separator}"),
     })
 }
 
-/// What is said of the columns and the distances.
-fn notes(columns: Columns, rows: &[Row], body: usize) -> Vec<String> {
+/// What is said of the distances.
+fn notes(columns: Columns, headed: bool) -> Vec<String> {
     let note = if columns.geographic { geo::NOTE } else { PLANE_NOTE };
     let mut notes = vec![note.to_owned()];
-    if body < rows.len() {
-        let used = |place| [Some(columns.x), Some(columns.y), columns.label].contains(&Some(place));
-        let unread = rows[0].cells.iter().enumerate().filter(|(place, _)| !used(*place));
-        notes.extend(unread.map(|(_, cell)| {
-            format!("The column `{}` was not read: points have a label and a place.", cell.text)
-        }));
-    } else if columns.geographic {
+    if columns.geographic && !headed {
         notes.push("Without a heading the first number is the latitude.".to_owned());
     }
     notes
@@ -254,7 +261,7 @@ fn distance(from: &(Number, Number), to: &(Number, Number)) -> Number {
 mod tests {
     use super::*;
     use crate::number::number_text;
-    use crate::{Reader, read};
+    use crate::{Datum, Reader, read};
     use proptest::prelude::*;
 
     fn between(from: (&str, &str), to: (&str, &str)) -> String {
@@ -350,10 +357,20 @@ mod tests {
     }
 
     #[test]
-    fn columns_that_are_not_read_are_said() {
-        let facts = read("stop x y demand\na 0 0 3\nb 3 4 5", None).facts;
-        let said = "The column `demand` was not read: points have a label and a place.";
-        assert!(facts.contains(&said.to_owned()), "{facts:?}");
+    fn further_columns_are_tables() {
+        let text = "stop;x;y;demand (t);street;r\na;0;0;3;Elm;1\nb;3;4;-;Oak;2";
+        let reading = read(&text.replace(";r\n", ";due\n"), None);
+        assert_eq!(reading.complaints, []);
+        let instance = reading.instance.unwrap();
+        let cells = BTreeMap::from([(vec!["a".to_owned()], RBig::from(3))]);
+        assert_eq!(instance.get("demand"), Some(&Datum::Table { arity: 1, cells }));
+        assert!(matches!(instance.get("due"), Some(Datum::Table { .. })));
+        assert_eq!((instance.units["demand"].as_str(), instance.get("street")), ("t", None));
+        let said = "The column `street` was not read: it holds words, or its heading none.";
+        assert!(reading.facts.contains(&said.to_owned()), "{:?}", reading.facts);
+        let taken = read(&text.replace("-;Oak", "3O;Oak"), None);
+        let found: Vec<_> = taken.complaints.iter().map(|c| (c.line, c.column, c.code)).collect();
+        assert_eq!(found, [(1, 28, "name-twice"), (3, 7, "not-a-number")]);
     }
 
     proptest! {

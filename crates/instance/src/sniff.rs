@@ -86,6 +86,9 @@ fn are_arcs(rows: &[Vec<String>], common: bool, style: Style) -> bool {
     if !common && !body.is_empty() && first.windows(2).any(ends) {
         return true;
     }
+    if are_numbered(rows, style) {
+        return true;
+    }
     let headed = first.len() > 2 && first.iter().all(|cell| is_word(cell, style.decimal_comma));
     if !headed {
         return arcs::are_drives(rows, style);
@@ -93,6 +96,19 @@ fn are_arcs(rows: &[Vec<String>], common: bool, style: Style) -> bool {
     let starts: BTreeSet<&String> = body.iter().filter_map(|row| row.first()).collect();
     let meet = body.iter().filter_map(|row| row.get(1)).any(|label| starts.contains(label));
     meet && arcs::are_drives(body, style) && body.iter().all(|row| row.len() > 2)
+}
+
+/// Three numbers a row, the first of which repeat and so are no labels of points: drives
+/// between numbered stops. Three rows are a matrix.
+fn are_numbered(rows: &[Vec<String>], style: Style) -> bool {
+    let whole = |cell: &String| cell.parse::<u32>().is_ok();
+    let drive = |row: &Vec<String>| row.len() == 3 && row[..2].iter().all(whole);
+    let starts: BTreeSet<&String> = rows.iter().filter_map(|row| row.first()).collect();
+    let pairs: BTreeSet<&[String]> = rows.iter().filter_map(|row| row.get(..2)).collect();
+    rows.len() > 3
+        && rows.iter().all(|row| drive(row) && parse(&row[2], style.decimal_comma).is_ok())
+        && starts.len() < rows.len()
+        && pairs.len() == rows.len()
 }
 
 fn are_points(rows: &[Vec<String>], style: Style) -> bool {
@@ -141,6 +157,8 @@ mod tests {
             ("Streets\n\na b 5\nb c 7", Reader::Arcs),
             ("undirected\n1 2 5\n2 3 7\n3 1 4", Reader::Arcs),
             ("1 2 5\n2 3 7\n3 1 4", Reader::Matrix),
+            ("1 2 5\n2 3 7\n3 1 4\n1 3 9", Reader::Arcs),
+            ("1 2 5\n2 3 7\n3 1 4\n4 3 9", Reader::Points),
             ("i j k\n0 1 2\n1 0 3\n2 3 0", Reader::Matrix),
             ("i j c\n1 2 5\n2 3 7\n3 1 4\n1 3 9", Reader::Arcs),
             ("from to\nfrom 0 1\nto 1 0", Reader::Matrix),

@@ -117,7 +117,7 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
     };
     let comma = if style.decimal_comma { ", with decimal commas" } else { "" };
     let how = format!("a matrix {labelled}, cells separated by {}{comma}", style.separator.name());
-    Some(RoundTrip { title, unit, square, points: None, notes, how })
+    Some(RoundTrip { title, unit, square, points: None, tables: Vec::new(), notes, how })
 }
 
 /// The place of the first row, if all rows are two words and a number.

@@ -174,6 +174,12 @@ pub(super) fn number(cell: &Cell, style: Style, sink: &mut Complaints) -> Option
     }
 }
 
+/// What is said of a table over `sets`.
+pub(super) fn said(name: &str, datum: &Datum, sets: &str) -> String {
+    let count = if let Datum::Table { cells, .. } = datum { cells.len() } else { 0 };
+    format!("{name} holds {} over {sets}.", plural(count, "number", "numbers"))
+}
+
 /// The cells of one table as they are read.
 pub(super) struct Cells {
     pub(super) cells: BTreeMap<Vec<String>, Number>,

@@ -12,7 +12,7 @@ use crate::instance::Datum;
 use crate::matrix::Row;
 
 use super::MAX_ENTRIES;
-use super::draft::{Cells, Draft, whole};
+use super::draft::{Cells, Draft, said, whole};
 use super::section::Section;
 
 /// No table has more indices than this.
@@ -68,7 +68,7 @@ pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) 
             }
         }
         let (datum, blank) = cells.finish(&name, indices.len());
-        draft.note(format!("{name} is a table over {}.", names.join(", ")));
+        draft.note(said(&name, &datum, &names.join(", ")));
         if let Some(blank) = blank {
             draft.note(blank);
         }

@@ -106,7 +106,7 @@ fn finish(
             return None;
         }
     }
-    let mut sentences = blocks::describe_all(&mut instance);
+    let mut sentences = blocks::describe_all(&mut instance, false);
     sentences.extend(notes);
     sentences.push("Read as tables with headings; every line was read.".to_owned());
     Some((instance, sentences))

@@ -119,7 +119,7 @@ fn units_are_kept() {
     assert_eq!(instance.units["unitCost"], "EUR");
     let said = "The heading `unit cost (EUR)` became the name unitCost, in EUR.".to_owned();
     assert!(reading.facts.contains(&said));
-    assert!(reading.facts.contains(&"unitCost is a table over client, depot.".to_owned()));
+    assert!(reading.facts.contains(&"unitCost holds 2 numbers over client, depot.".to_owned()));
 }
 
 #[test]

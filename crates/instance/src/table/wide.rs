@@ -9,7 +9,7 @@ use crate::matrix::Row;
 use crate::names;
 
 use super::corner::{self, Corner};
-use super::draft::{Cells, Draft, whole};
+use super::draft::{Cells, Draft, said, whole};
 use super::section::Section;
 
 /// Words that name a table and no set.
@@ -110,10 +110,7 @@ pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) 
         }
     }
     let (datum, blank) = cells.finish(&name, 2);
-    draft.note(format!(
-        "{name} is one table, its rows over {} and its columns over {}.",
-        sets.0, sets.1
-    ));
+    draft.note(said(&name, &datum, &format!("{}, {}", sets.0, sets.1)));
     if let Some(blank) = blank {
         draft.note(blank);
     }

@@ -53,6 +53,7 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
         unit: String::new(),
         square,
         points,
+        tables: Vec::new(),
         notes: Vec::new(),
         how: format!("a TSPLIB file, distances by {how}"),
     })

@@ -43,9 +43,10 @@ const STUDIES: [(&str, ()); 10] = [
 ];
 
 /// The words for the readers of instances.
-const READERS: [(&str, ()); 7] = [
+const READERS: [(&str, ()); 8] = [
     ("matrix", ()),
     ("points", ()),
+    ("points geographic", ()),
     ("arcs", ()),
     ("table", ()),
     ("tsplib", ()),

@@ -21,7 +21,8 @@ struct Set {
 /// Sets, and what lies over them.
 pub(super) struct Draft {
     sets: Vec<(String, Set)>,
-    data: Vec<(String, Datum)>,
+    /// Each with the place of its heading.
+    data: Vec<(String, Range<usize>, Datum)>,
     taken: BTreeSet<String>,
     units: BTreeMap<String, String>,
     notes: Vec<String>,
@@ -111,7 +112,7 @@ impl Draft {
             return sink.error(heading.span.clone(), "too-large", message, mend);
         }
         if self.taken.insert(name.to_owned()) {
-            self.data.push((name.to_owned(), datum));
+            self.data.push((name.to_owned(), heading.span.clone(), datum));
             return;
         }
         let message = format!("the name {} is given twice", excerpt(name));
@@ -119,21 +120,21 @@ impl Draft {
         sink.error(heading.span.clone(), "name-twice", message, mend);
     }
 
-    /// Moves everything into an instance, sets first; gives the notes.
-    pub(super) fn fill(self, instance: &mut Instance) -> Vec<String> {
-        let mut notes = self.notes;
+    /// Moves everything into an instance, sets first; gives the notes. Complains where a table
+    /// has the name of a set.
+    pub(super) fn fill(self, instance: &mut Instance, sink: &mut Complaints) -> Vec<String> {
+        let clash = |name: &String| self.sets.iter().any(|(set, _)| set == name);
+        for (name, span, _) in self.data.iter().filter(|(name, ..)| clash(name)) {
+            let message = format!("{} is the name of a set too", excerpt(name));
+            let mend = "Give the table or the set another heading.";
+            sink.error(span.clone(), "name-twice", message, mend);
+        }
         for (name, set) in self.sets {
-            if self.taken.contains(&name) {
-                notes.push(format!(
-                    "The set {name} has the name of a table and is left out: rename one of them."
-                ));
-                continue;
-            }
             let integers: Option<Vec<i64>> = set.labels.iter().map(|label| whole(label)).collect();
             let datum = integers.map_or(Datum::Labels(set.labels), Datum::Integers);
             instance.set(&name, datum);
         }
-        for (name, datum) in self.data {
+        for (name, _, datum) in self.data {
             instance.set(&name, datum);
         }
         for (name, unit) in self.units {
@@ -144,7 +145,7 @@ impl Draft {
         if let Some(unit) = instance.units.get("c") {
             instance.unit = unit.clone();
         }
-        notes
+        self.notes
     }
 }
 

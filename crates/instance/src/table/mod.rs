@@ -92,7 +92,7 @@ fn finish(
 ) -> Option<(Instance, Vec<String>)> {
     let mut instance = Instance::new(Reader::Table);
     instance.title = title.unwrap_or("").to_owned();
-    let notes = draft.fill(&mut instance);
+    let notes = draft.fill(&mut instance, sink);
     for (name, datum) in instance.data() {
         let size = match datum {
             Datum::Labels(labels) => labels.len(),

@@ -197,6 +197,8 @@ fn broken_cells_are_all_named() {
     assert_eq!(places(&wide), [(3, 7, "not-a-number")]);
     let twice = table("client fee\na 1\n\nclient fee\nb 2\n");
     assert_eq!(places(&twice), [(4, 8, "name-twice")]);
+    let both = table("client fee\na 1\n\nfee client\nx 2\n");
+    assert_eq!(places(&both), [(1, 8, "name-twice"), (4, 5, "name-twice")]);
     assert_eq!(places(&table("client fee\n\n")), [(1, 1, "nothing-to-read")]);
     assert_eq!(places(&table("load 3\nfee 4 5\n")), [(2, 1, "row-length")]);
 }

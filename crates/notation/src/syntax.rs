@@ -22,6 +22,8 @@ pub struct Formulation {
     pub unread: Vec<String>,
     /// Where new lines can be put.
     pub ends: Ends,
+    /// Whether every line could be read.
+    pub complete: bool,
 }
 
 /// The byte after the last line of a part, for mends that add a line.
@@ -104,6 +106,20 @@ pub enum Relation {
     Subset,
     /// `⊆`
     SubsetOrEqual,
+}
+
+impl Relation {
+    /// The relation as it reads from the right: `a < b` is `b > a`.
+    #[must_use]
+    pub fn turned(self) -> Self {
+        match self {
+            Self::Less => Self::Greater,
+            Self::AtMost => Self::AtLeast,
+            Self::Greater => Self::Less,
+            Self::AtLeast => Self::AtMost,
+            other => other,
+        }
+    }
 }
 
 /// An expression with its place.

@@ -378,3 +378,57 @@ fn mends_can_be_applied() {
         assert!(!codes.contains(&"name.undeclared"), "{mended}\n{codes:?}");
     }
 }
+
+#[test]
+fn names_are_mapped_and_states_are_by_label() {
+    let text = "data\n  N\n  w_i ∀ i ∈ N\nminimise\n  Σ_{i ∈ N} w_i z_i\nsubject to\n  z_i ≥ 1 ∀ i ∈ N\n  z_i ≤ 2 w_i + 3 ∀ i ∈ N (most)\n";
+    let names = [("N".to_owned(), "V".to_owned()), ("w".to_owned(), "q".to_owned())].into();
+    let states = [("msot".to_owned(), model::FamilyState::Out)].into();
+    let (model, found) = hullward_notation::model(text, &kitchen(), &names, &states).unwrap();
+    assert_eq!(model.columns().len(), 5);
+    let codes: Vec<_> = found.iter().map(|d| d.code).collect();
+    assert_eq!(codes, ["data.no-family"]);
+    let lacks =
+        hullward_notation::model(text, &kitchen(), &Default::default(), &states).unwrap_err();
+    assert!(
+        lacks.iter().any(|d| d.code == "data.lacks"
+            && d.message.starts_with("the instance lacks w; it offers V, c"))
+    );
+}
+
+#[test]
+fn the_limit_names_the_family_that_would_exceed_it() {
+    use hullward_notation::{Expansion, Limits, bind, check, parse};
+    let text = around(
+        "  V",
+        "",
+        "  Σ_{j ∈ V} z_j ≥ z_i ∀ i ∈ V (all pairs)\n  z_i ≥ z_j ∀ i, j ∈ V : i ≠ j (order)",
+    );
+    let made = |nonzeros: usize| {
+        let bound = bind(&check(&parse(&text).tree).0, &kitchen(), &Default::default()).unwrap();
+        Expansion::new(bound, &Default::default(), Limits { nonzeros }).finish()
+    };
+    assert!(made(65).is_ok());
+    let found = made(40).unwrap_err();
+    assert_eq!(found[0].code, "size.nonzeros");
+    assert_eq!(found[0].message, "with (order) the model has more than 40 non-zeros");
+    assert_eq!(
+        made(20).unwrap_err()[0].message,
+        "with (all pairs) the model has more than 20 non-zeros"
+    );
+}
+
+/// A text with a line that cannot be read is never bound, whatever the rest says.
+#[test]
+fn a_text_with_an_unread_line_is_not_bound() {
+    use hullward_notation::{bind, check, parse};
+    let text = around("  V", "", "  z_i + ≤ 1 ∀ i ∈ V (broken)");
+    let parsed = parse(&text);
+    assert_eq!(parsed.diagnostics.len(), 1);
+    let (checked, _) = check(&parsed.tree);
+    assert!(!checked.is_sound());
+    assert_eq!(
+        bind(&checked, &kitchen(), &Default::default()).unwrap_err()[0].code,
+        "data.unsound"
+    );
+}

@@ -116,28 +116,7 @@ impl Checker<'_> {
         };
         let binder = (0..links.len()).find(|&k| binds(k));
         if let Some(k) = binder {
-            if links[k].0 == Relation::In {
-                // i ≠ j ∈ V: all of them are from V
-                let before: Vec<&Name> =
-                    operands[..k].iter().filter_map(|o| self.new_name(o, work)).collect();
-                let fresh =
-                    before.into_iter().filter(|n| !work.pending.iter().any(|(p, _)| *p == n.text));
-                let fresh: Vec<(String, Span)> =
-                    fresh.map(|n| (n.text.clone(), item.span)).collect();
-                work.pending.extend(fresh);
-                self.membership_step(operands[k], operands[k + 1], work)?;
-            } else {
-                self.subset_step(operands[k], links[k].0, operands[k + 1], work)?;
-            }
-            for (i, (relation, _)) in links.iter().enumerate().filter(|(i, _)| *i != k) {
-                let kind = Kind::Chain(
-                    Box::new(operands[i].clone()),
-                    vec![(*relation, operands[i + 1].clone())],
-                );
-                let span = operands[i].span.to(operands[i + 1].span);
-                self.condition_step(&Expression { kind, span }, work)?;
-            }
-            return Some(());
+            return self.bind_in_chain(k, &operands, links, work);
         }
         let new: Vec<&Name> = operands.iter().filter_map(|o| self.new_name(o, work)).collect();
         if new.is_empty() {
@@ -158,6 +137,38 @@ impl Checker<'_> {
             }
         }
         work.deferred.push(item.clone());
+        Some(())
+    }
+
+    /// Binds at link `k` of a chain; its other links are conditions.
+    fn bind_in_chain(
+        &mut self,
+        k: usize,
+        operands: &[&Expression],
+        links: &[(Relation, Expression)],
+        work: &mut Quantifier<'_>,
+    ) -> Option<()> {
+        if links[k].0 == Relation::In {
+            // i ≠ j ∈ V: all of them are from V
+            let before: Vec<&Name> =
+                operands[..k].iter().filter_map(|o| self.new_name(o, work)).collect();
+            let fresh =
+                before.into_iter().filter(|n| !work.pending.iter().any(|(p, _)| *p == n.text));
+            let fresh: Vec<(String, Span)> =
+                fresh.map(|n| (n.text.clone(), operands[k].span)).collect();
+            work.pending.extend(fresh);
+            self.membership_step(operands[k], operands[k + 1], work)?;
+        } else {
+            self.subset_step(operands[k], links[k].0, operands[k + 1], work)?;
+        }
+        for (i, (relation, _)) in links.iter().enumerate().filter(|(i, _)| *i != k) {
+            let kind = Kind::Chain(
+                Box::new(operands[i].clone()),
+                vec![(*relation, operands[i + 1].clone())],
+            );
+            let span = operands[i].span.to(operands[i + 1].span);
+            self.condition_step(&Expression { kind, span }, work)?;
+        }
         Some(())
     }
 

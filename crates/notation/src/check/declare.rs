@@ -41,7 +41,7 @@ impl<'t> Checker<'t> {
         let flipped = line.left.len() == 1 && !matches!(line.left[0].kind, Kind::Name(_));
         let (names, links) = match (flipped, line.links.first()) {
             (true, Some((relation, name))) if matches!(name.kind, Kind::Name(_)) => {
-                let mut links = vec![(turned(*relation), &line.left[0])];
+                let mut links = vec![(relation.turned(), &line.left[0])];
                 links.extend(line.links[1..].iter().map(|(r, e)| (*r, e)));
                 (vec![name], links)
             }
@@ -290,16 +290,6 @@ pub(super) fn whole_set(steps: &[Step], indices: &[Node]) -> Option<SymbolId> {
         |(p, n): (&Pattern, &Node)| matches!((p, n), (Pattern::Bind(a), Node::Slot(b)) if a == b);
     let all = pattern.len() == indices.len() && pattern.iter().zip(indices).all(same);
     (all && none.is_empty() && !indices.is_empty()).then_some(*set)
-}
-
-fn turned(relation: Relation) -> Relation {
-    match relation {
-        Relation::Less => Relation::Greater,
-        Relation::AtMost => Relation::AtLeast,
-        Relation::Greater => Relation::Less,
-        Relation::AtLeast => Relation::AtMost,
-        other => other,
-    }
 }
 
 fn mentions(expression: &Expression, name: &str) -> bool {

@@ -136,7 +136,7 @@ impl<'t> Checker<'t> {
                             (operands[k], operands[k + 1], line.links[k].0);
                         let bound = match self.variable_of(left) {
                             true => (left, vec![(relation, right)]),
-                            false => (right, vec![(turned(relation), left)]),
+                            false => (right, vec![(relation.turned(), left)]),
                         };
                         self.domain(line, bound.0, &bound.1);
                     }
@@ -318,7 +318,7 @@ fn single_bounds(line: &Line) -> Bounds<'_> {
         }
         let mut bounds = Vec::new();
         if k > 0 {
-            bounds.push((turned(line.links[k - 1].0), all[k - 1]));
+            bounds.push((line.links[k - 1].0.turned(), all[k - 1]));
         }
         if let Some((relation, right)) = line.links.get(k) {
             bounds.push((*relation, right));
@@ -333,16 +333,6 @@ fn listed_bounds(line: &Line) -> Bounds<'_> {
     let bounds: Vec<_> =
         line.links.iter().map(|(relation, operand)| (*relation, operand)).collect();
     line.left.iter().map(|name| (name, bounds.clone())).collect()
-}
-
-fn turned(relation: Relation) -> Relation {
-    match relation {
-        Relation::Less => Relation::Greater,
-        Relation::AtMost => Relation::AtLeast,
-        Relation::Greater => Relation::Less,
-        Relation::AtLeast => Relation::AtMost,
-        other => other,
-    }
 }
 
 /// Every bare name in a quantifier: those it binds, and more.

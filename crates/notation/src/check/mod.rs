@@ -53,7 +53,7 @@ pub fn check(tree: &Formulation) -> (Checked, Vec<Diagnostic>) {
     let mut checker = Checker::new(tree);
     let plan = checker.formulation();
     let diagnostics = tidy(checker.diagnostics);
-    let sound = !diagnostics.iter().any(Diagnostic::is_error);
+    let sound = tree.complete && !diagnostics.iter().any(Diagnostic::is_error);
     (Checked { plan: Rc::new(plan), sound }, diagnostics)
 }
 

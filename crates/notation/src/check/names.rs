@@ -50,22 +50,12 @@ impl Checker<'_> {
     }
 
     pub(super) fn undeclared<T>(&mut self, name: &str, span: Span) -> Option<T> {
+        // once is enough, and a line that was not read may have declared it
         if !self.complained.insert(name.to_owned()) {
-            // a sound text never gets here; one complaint about a name is enough
-            self.mark_unsound(span, name);
             return None;
         }
         let additions = self.additions(name);
         self.report(message::undeclared(name, span, additions))
-    }
-
-    /// A line that was not read may have declared the name: without that line there is an
-    /// error already.
-    fn mark_unsound(&self, _span: Span, name: &str) {
-        debug_assert!(
-            self.tree.unread.iter().any(|w| w == name) || !self.diagnostics.is_empty(),
-            "a name without a declaration must have been reported"
-        );
     }
 
     fn additions(&self, name: &str) -> message::Additions {

@@ -188,7 +188,7 @@ impl Expansion {
         let uniform = weights.iter().all(|w| *w == first) && !first.is_zero();
         if uniform || into.ground.is_empty() {
             let scale = if first.is_zero() { Number::ONE } else { first };
-            let relation = if scale < Number::ZERO { turned(relation) } else { relation };
+            let relation = if scale < Number::ZERO { relation.turned() } else { relation };
             return size(relation, &(-constant / scale), into);
         }
         // Σ w + constant ⋛ 0
@@ -319,16 +319,6 @@ fn size(relation: Relation, bound: &Number, into: &mut Gathered<'_>) -> Evaluate
         _ => return fail(message::condition(into.span)),
     }
     Ok(())
-}
-
-fn turned(relation: Relation) -> Relation {
-    match relation {
-        Relation::Less => Relation::Greater,
-        Relation::AtMost => Relation::AtLeast,
-        Relation::Greater => Relation::Less,
-        Relation::AtLeast => Relation::AtMost,
-        other => other,
-    }
 }
 
 /// The greatest multiple of the weights' common step that is less than `bound`: a sum of

@@ -50,6 +50,7 @@ pub fn parse(text: &str) -> Parse {
     };
     let mut tree = parser.document();
     tree.title = title;
+    tree.complete = parser.diagnostics.is_empty();
     Parse { tree, diagnostics: tidy(parser.diagnostics) }
 }
 

@@ -146,3 +146,71 @@ impl LaneRun {
         Some(LaneAction::Asked(Phase::Running))
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::state::tree::tests::created;
+    use record::results::ErrorReport;
+
+    fn envelope(run: u32, reply: Reply) -> Envelope {
+        Envelope { run: RunNumber(run), sequence: 0, reply }
+    }
+
+    fn batch() -> Reply {
+        Reply::Batch(vec![created(1, 0)])
+    }
+
+    fn loaded() -> LaneRun {
+        let mut lane = LaneRun::new(LaneJob::default(), None);
+        assert!(matches!(lane.load(), LaneAction::Load));
+        lane
+    }
+
+    #[test]
+    fn late_replies_of_an_older_run_are_dropped() {
+        let mut lane = loaded();
+        lane.load();
+        lane.keep(envelope(1, batch()));
+        lane.keep(envelope(2, batch()));
+        assert_eq!(lane.inbox.len(), 1);
+    }
+
+    #[test]
+    fn one_batch_a_frame_until_they_pile_up() {
+        let mut lane = loaded();
+        for _ in 0..3 {
+            lane.keep(envelope(1, batch()));
+        }
+        assert_eq!(lane.take().len(), 1);
+        for _ in 0..2 * PILE {
+            lane.keep(envelope(1, batch()));
+        }
+        assert_eq!(lane.take().len(), PILE);
+    }
+
+    #[test]
+    fn a_request_that_fails_after_the_root_does_not_fail_the_rival() {
+        let error = || ErrorReport {
+            message: "no such node".to_owned(),
+            complaints: Vec::new(),
+            place: String::new(),
+        };
+        let mut lane = loaded();
+        assert!(matches!(lane.hear(Reply::Failed(error())), Some(LaneAction::Failed(_))));
+        lane.rooted = true;
+        assert!(matches!(lane.hear(Reply::Failed(error())), Some(LaneAction::Notice(_))));
+    }
+
+    #[test]
+    fn a_replaced_worker_searches_again_up_to_where_the_old_one_was() {
+        let mut lane = loaded();
+        assert!(lane.after_root().is_none());
+        lane.replay = Some(7);
+        assert!(matches!(lane.after_root(), Some(LaneAction::Asked(Phase::Running))));
+        lane.replay = Some(0);
+        assert!(lane.after_root().is_none());
+        lane.run_at_root = true;
+        assert!(lane.after_root().is_some() && lane.after_root().is_none());
+    }
+}

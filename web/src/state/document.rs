@@ -11,11 +11,14 @@ use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
 
 /// The readers, as the scenario file names them, with a word for people.
-pub(crate) const READERS: [(&str, &str); 4] = [
+pub(crate) const READERS: [(&str, &str); 7] = [
     ("matrix", "distance table"),
     ("points", "points in the plane"),
+    ("points geographic", "points by latitude, longitude"),
+    ("arcs", "list of drives"),
+    ("table", "tables of a spreadsheet"),
     ("tsplib", "TSPLIB file"),
-    ("blocks", "blocks"),
+    ("blocks", "named blocks"),
 ];
 
 /// A title for an instance that has none.

@@ -3,7 +3,7 @@
 
 use record::event::{Branching, NodeState};
 use record::message::{NodeDetail, RivalReport, ViolatedSubset};
-use report::number::{full, of, short};
+use report::number::{fixed, full, of, short};
 use wasm_bindgen::JsCast;
 use web_sys::HtmlElement;
 use yew::prelude::*;
@@ -24,10 +24,15 @@ const SHOWN: usize = 12;
 
 /// Leads the focus to the inspector.
 pub(crate) fn focus_inspector() {
-    let element = gloo_utils::document().get_element_by_id(HEADING);
-    if let Some(heading) = element.and_then(|element| element.dyn_into::<HtmlElement>().ok()) {
-        // A heading that takes no focus leaves it where it was.
-        let _ = heading.focus();
+    focus(HEADING);
+}
+
+/// Leads the focus to an element.
+pub(crate) fn focus(id: &str) {
+    let element = gloo_utils::document().get_element_by_id(id);
+    if let Some(element) = element.and_then(|element| element.dyn_into::<HtmlElement>().ok()) {
+        // An element that takes no focus leaves it where it was.
+        let _ = element.focus();
     }
 }
 
@@ -220,14 +225,14 @@ fn violated(sets: &[ViolatedSubset], shown: Option<usize>, show: &Callback<usize
     let more = sets.len().saturating_sub(SHOWN) as u64;
     html! {
         <>
-            <h3>{ "Sets whose rows it violates" }</h3>
+            <h3>{ "Violated sets" }</h3>
             <ul class="sets small" data-testid="violated">
                 for (index, set) in sets.iter().take(SHOWN).enumerate() {
                     <li key={index}>
+                        { format!("{} violated by {}: ", set.family, fixed(set.violation, 3)) }
                         <button type="button" class="link" onclick={press(index)}
                             aria-pressed={if shown == Some(index) { "true" } else { "false" }}
                         >{ set.subset.join(", ") }</button>
-                        { format!(": {} by {}", set.family, short(set.violation)) }
                     </li>
                 }
                 if more > 0 { <li class="soft">{ format!("and {more} more") }</li> }

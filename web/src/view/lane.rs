@@ -18,7 +18,7 @@ use crate::view::canvas::TreeCanvas;
 use crate::view::families::Families;
 use crate::view::figure::{figure, gap, share};
 use crate::view::hands::{Hands, use_hands};
-use crate::view::inspector::focus_inspector;
+use crate::view::inspector::{focus, focus_inspector};
 use crate::view::paint::Scene;
 use crate::view::ruler::Ruler;
 use crate::view::twin::Twin;
@@ -114,6 +114,7 @@ fn name(props: &LaneProps, hands: Option<&Hands>) -> Html {
     let onclick = Callback::from(move |_: MouseEvent| {
         if let Some(document) = &document {
             document.dispatch(DocumentAction::Remove(id));
+            focus(crate::view::rivals::HEADING);
         }
     });
     let remove = format!("Remove {}, {}", props.letter, props.title);

@@ -63,7 +63,7 @@ pub(crate) fn Paste(props: &PasteProps) -> Html {
             ondragleave={Callback::from(move |_: DragEvent| leave.set(false))}
         >
             <label for={BOX}>
-                { "Paste a distance table, points, a TSPLIB file or a scenario; or drop a file here." }
+                { "Paste a distance table, points, a list of drives, a TSPLIB file or a scenario; or drop a file here." }
             </label>
             <TextBox draft={props.draft.clone()} broken={props.broken} />
             <div class="row">

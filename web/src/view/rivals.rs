@@ -1,5 +1,6 @@
 //! The rivals: one lane each under one shared axis.
 
+use record::message::CatalogueEntry;
 use report::axis::Axis;
 use report::number::short;
 use web_sys::HtmlSelectElement;
@@ -16,6 +17,9 @@ use crate::view::lane::LaneView;
 
 /// Hues, after which they come again.
 pub(crate) const HUES: usize = 6;
+
+/// The id of the heading, where the focus goes when a rival leaves.
+pub(crate) const HEADING: &str = "rivals-heading";
 
 /// Pixels of axis a labelled tick wants.
 const TICK: f64 = 110.0;
@@ -37,9 +41,9 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
     let domain = board.domain(best.as_ref().map(|best| best.value));
     let axis = domain.map(|(low, high)| Axis::fit(low, high, (width / TICK) as u32));
     html! {
-        <section class="rivals" aria-labelledby="rivals-heading">
+        <section class="rivals" aria-labelledby={HEADING}>
             <div class="heading">
-                <h2 id="rivals-heading">{ heading(document) }</h2>
+                <h2 id={HEADING} tabindex="-1">{ heading(document) }</h2>
                 if let Some(hands) = &hands { { for_all(document, board, hands) } }
             </div>
             <div class="axis-row">
@@ -171,9 +175,29 @@ fn Key() -> Html {
     }
 }
 
+/// The entries with their place in the catalogue, family by family in the order of the catalogue.
+fn by_family(catalogue: &[CatalogueEntry]) -> Vec<(&str, Vec<(usize, &CatalogueEntry)>)> {
+    let mut families: Vec<(&str, Vec<_>)> = Vec::new();
+    for (place, entry) in catalogue.iter().enumerate() {
+        match families.iter_mut().find(|(family, _)| *family == entry.family) {
+            Some((_, entries)) => entries.push((place, entry)),
+            None => families.push((&entry.family, vec![(place, entry)])),
+        }
+    }
+    families
+}
+
+fn choice(entry: &CatalogueEntry, selected: bool) -> Html {
+    html! {
+        <option
+            key={entry.id.clone()} value={entry.id.clone()} title={entry.citation.clone()} {selected}
+        >{ entry.title.clone() }</option>
+    }
+}
+
 #[derive(Properties, PartialEq)]
 struct AddProps {
-    catalogue: Shared<Vec<record::message::CatalogueEntry>>,
+    catalogue: Shared<Vec<CatalogueEntry>>,
 }
 
 #[component]
@@ -197,17 +221,38 @@ fn AddRival(props: &AddProps) -> Html {
             <label class="field">
                 { "Another rival" }
                 <select ref={select} data-testid="catalogue">
-                    for (place, entry) in props.catalogue.iter().enumerate() {
-                        <option
-                            value={entry.id.clone()} title={entry.citation.clone()}
-                            selected={place == 0}
-                        >
-                            { entry.title.clone() }
-                        </option>
+                    for (family, entries) in by_family(&props.catalogue) {
+                        <optgroup key={family} label={family.to_owned()}>
+                            for (place, entry) in entries { { choice(entry, place == 0) } }
+                        </optgroup>
                     }
                 </select>
             </label>
             <button type="button" data-testid="add" onclick={add}>{ "Add" }</button>
         </div>
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn entries_are_grouped_in_the_order_of_the_catalogue() {
+        let entry = |id: &str, family: &str| CatalogueEntry {
+            id: id.to_owned(),
+            title: String::new(),
+            family: family.to_owned(),
+            relaxation: false,
+            citation: String::new(),
+            text: String::new(),
+        };
+        let catalogue = [entry("a", "round"), entry("b", "path"), entry("c", "round")];
+        let places = |entries: &[(usize, &CatalogueEntry)]| entries.iter().map(|e| e.0).collect();
+        let groups: Vec<(&str, Vec<usize>)> = by_family(&catalogue)
+            .iter()
+            .map(|(family, entries)| (*family, places(entries)))
+            .collect();
+        assert_eq!(groups, [("round", vec![0, 2]), ("path", vec![1])]);
     }
 }

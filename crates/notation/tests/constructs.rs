@@ -380,6 +380,22 @@ fn mends_can_be_applied() {
 }
 
 #[test]
+fn edges_named_by_one_letter() {
+    let edges = "  E ⊆ V × V\n  w_e = 2 ∀ e ∈ E";
+    let lines = "  x_e ∈ {0,1} ∀ e ∈ E\n  Σ_{e ∈ δ(i)} w_e x_e = 2 ∀ i ∈ V (rows)";
+    assert_eq!(rows(edges, "", lines)[0], "2 x[Ash → Birch] + 2 x[Ash → Elm] = 2");
+    let lines = "  x_e ∈ {0,1} ∀ e ∈ E\n  2 x_e ≤ w_e ∀ e ∈ E : e ∉ ∅ (rows)";
+    assert_eq!(rows(edges, "", lines).len(), 5);
+    let pairs = subsets("", "  Σ_{e ∈ E(S)} x_e ≤ |S| − 1 ∀ S ⊂ V : |S| ≥ 2 (rows)");
+    assert_eq!(pairs.1, subsets("", "  x(E(S)) ≤ |S| − 1 ∀ S ⊂ V : |S| ≥ 2 (rows)").1);
+    let cut = subsets(
+        "",
+        "  \\sum_{e \\in \\delta(S)} x_e \\ge 2 \\quad \\forall\\, \\emptyset \\ne S \\subset V \\tag{rows}",
+    );
+    assert_eq!(cut.1, subsets("", "  x(δ(S)) ≥ 2 ∀ S ⊂ V : S ≠ ∅ (rows)").1);
+}
+
+#[test]
 fn names_are_mapped_and_states_are_by_label() {
     let text = "data\n  N\n  w_i ∀ i ∈ N\nminimise\n  Σ_{i ∈ N} w_i z_i\nsubject to\n  z_i ≥ 1 ∀ i ∈ N\n  z_i ≤ 2 w_i + 3 ∀ i ∈ N (most)\n";
     let names = [("N".to_owned(), "V".to_owned()), ("w".to_owned(), "q".to_owned())].into();

@@ -1,5 +1,6 @@
 //! Quantifiers to steps: a new name binds, a bound one makes a condition, left to right.
 
+use super::indices::place_name;
 use super::{Bound, Checker, Local};
 use crate::diagnostic::{names as message, shapes, subsets};
 use crate::place::Span;
@@ -241,7 +242,9 @@ impl Checker<'_> {
         if items.len() != roots.len() {
             return self.report(shapes::tuple_size(roots.len(), items.len(), left.span));
         }
+        let tuple = self.tuple_name(left, roots.len(), work);
         let pattern = self.pattern(&items, &roots, work)?;
+        self.name_tuple(tuple, roots.len(), work);
         self.push_over(pattern, set, left.span.to(right.span), work);
         Some(())
     }
@@ -293,30 +296,49 @@ impl Checker<'_> {
         work.steps.push(Step::Over { pattern, set: ground, span });
     }
 
-    /// The places of a pattern; letters of one word are split to fit.
+    /// The places of a pattern. One word for several places is split into its letters where
+    /// they fit (`ij ∈ A`), else it names the tuple (`e ∈ E`).
     fn pattern_items(
         &self,
         left: &Expression,
         wanted: usize,
         work: &Quantifier<'_>,
     ) -> Vec<Expression> {
-        match &left.kind {
-            Kind::Tuple(items) => items.clone(),
-            Kind::Name(name)
-                if wanted > 1 && self.is_new(name, work) && name.text.chars().count() == wanted =>
-            {
-                let letter = |c: char| Expression {
-                    kind: Kind::Name(Name {
-                        text: c.to_string(),
-                        indices: Vec::new(),
-                        superscript: None,
-                    }),
-                    span: left.span,
-                };
-                name.text.chars().map(letter).collect()
+        let names: Vec<String> = match &left.kind {
+            Kind::Tuple(items) => return items.clone(),
+            Kind::Name(name) if wanted > 1 && self.is_new(name, work) => {
+                let letters: Vec<String> = name.text.chars().map(String::from).collect();
+                if letters.len() == wanted {
+                    letters
+                } else {
+                    (0..wanted).map(|k| place_name(&name.text, k)).collect()
+                }
             }
-            _ => vec![left.clone()],
-        }
+            _ => return vec![left.clone()],
+        };
+        let item = |text| Expression {
+            kind: Kind::Name(Name { text, indices: Vec::new(), superscript: None }),
+            span: left.span,
+        };
+        names.into_iter().map(item).collect()
+    }
+
+    /// The name that a pattern of `wanted` places gives to the whole tuple.
+    fn tuple_name(
+        &self,
+        left: &Expression,
+        wanted: usize,
+        work: &Quantifier<'_>,
+    ) -> Option<String> {
+        let name = self.new_name(left, work)?;
+        (wanted > 1 && name.text.chars().count() != wanted).then(|| name.text.clone())
+    }
+
+    fn name_tuple(&mut self, name: Option<String>, places: usize, work: &mut Quantifier<'_>) {
+        let Some(name) = name else { return };
+        work.pending.retain(|(n, _)| *n != name);
+        work.fenced = work.fenced.min(work.pending.len());
+        self.locals.push(Local { name, what: Bound::Tuple(places) });
     }
 
     fn pattern(
@@ -363,6 +385,7 @@ impl Checker<'_> {
         if items.len() != slots.len() {
             return self.report(shapes::tuple_size(slots.len(), items.len(), left.span));
         }
+        let (tuple, places) = (self.tuple_name(left, slots.len(), work), slots.len());
         work.steps.extend(steps);
         for (at, (item, slot)) in (before..).zip(items.iter().zip(slots)) {
             match self.new_name(item, work).map(|n| n.text.clone()) {
@@ -377,6 +400,7 @@ impl Checker<'_> {
                 }
             }
         }
+        self.name_tuple(tuple, places, work);
         Some(())
     }
 

@@ -52,7 +52,7 @@ impl<'t> Checker<'t> {
     fn tuple_of_family(&self) -> (Vec<Slot>, Vec<Root>) {
         let elements = self.locals.iter().filter_map(|local| match local.what {
             Bound::Element(slot, root) => Some((slot, root)),
-            Bound::Subset(_) => None,
+            Bound::Subset(_) | Bound::Tuple(_) => None,
         });
         elements.unzip()
     }

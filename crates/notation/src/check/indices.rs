@@ -1,7 +1,7 @@
 //! Subscripts: `x_{i,j}`, `x_{ij}`, `x_i^k`, `s_{t−1}`.
 
 use super::names::{Piece, splits};
-use super::{Checker, Form};
+use super::{Bound, Checker, Form};
 use crate::diagnostic::shapes as message;
 use crate::place::Span;
 use crate::plan::{Node, Root};
@@ -59,14 +59,28 @@ impl Checker<'_> {
 
     /// Subscripts as separate expressions; letters are split when there are too few.
     pub(super) fn spread(&self, written: &[Expression], wanted: usize) -> Vec<Expression> {
+        let written: Vec<Expression> = written.iter().flat_map(|e| self.places(e)).collect();
         let all_known = written.iter().all(|e| match &e.kind {
             Kind::Name(name) if name.indices.is_empty() => self.is_known(&name.text),
             _ => true,
         });
         if written.len() >= wanted && all_known {
-            return written.to_vec();
+            return written;
         }
         written.iter().flat_map(|e| self.letters(e)).collect()
+    }
+
+    /// The places of a name that stands for a tuple; else the expression itself.
+    pub(super) fn places(&self, expression: &Expression) -> Vec<Expression> {
+        let Kind::Name(name) = &expression.kind else { return vec![expression.clone()] };
+        let tuple = self.local(&name.text).map(|at| self.locals[at].what);
+        match tuple {
+            Some(Bound::Tuple(places)) if name.indices.is_empty() => {
+                let place = |k| Piece::Name(place_name(&name.text, k));
+                (0..places).map(|k| as_expression(&place(k), expression.span)).collect()
+            }
+            _ => vec![expression.clone()],
+        }
     }
 
     fn letters(&self, expression: &Expression) -> Vec<Expression> {
@@ -107,6 +121,11 @@ impl Checker<'_> {
             form => self.report(message::expected("an index", form.noun(), typed.span)),
         }
     }
+}
+
+/// The name of a place of a tuple; no text can spell it.
+pub(super) fn place_name(tuple: &str, place: usize) -> String {
+    format!("{tuple}.{}", place + 1)
 }
 
 fn as_expression(piece: &Piece, span: Span) -> Expression {

@@ -75,6 +75,8 @@ struct Local {
 enum Bound {
     Element(Slot, Root),
     Subset(Root),
+    /// A name for a tuple (`e ∈ E`), whose places are the locals `e.1`, `e.2`, …
+    Tuple(usize),
 }
 
 /// What kind of value an expression has.

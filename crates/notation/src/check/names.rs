@@ -117,6 +117,11 @@ impl Checker<'_> {
                     self.subset_uses += 1;
                     (Node::Subset, Form::Set(vec![root]))
                 }
+                Bound::Tuple(_) => {
+                    let wanted = "an element or a number";
+                    return self
+                        .report(crate::diagnostic::shapes::expected(wanted, "a tuple", span));
+                }
             };
             let typed = Typed { node, form, variable: None, span };
             return self.raised(typed, name.superscript.as_deref());

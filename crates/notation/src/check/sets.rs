@@ -66,6 +66,7 @@ impl Checker<'_> {
             Kind::Tuple(items) => items.as_slice(),
             _ => std::slice::from_ref(expression),
         };
+        let items: Vec<Expression> = items.iter().flat_map(|item| self.places(item)).collect();
         let read: Vec<Option<(Node, Root)>> = items.iter().map(|item| self.index(item)).collect();
         let read: Vec<(Node, Root)> = read.into_iter().collect::<Option<_>>()?;
         Some(read.into_iter().unzip())

@@ -17,7 +17,11 @@ pub(crate) fn lacks(name: &str, key: &str, offers: &[String], span: Span) -> Dia
 
 pub(crate) fn shape(name: &str, wanted: &str, found: &str, span: Span) -> Diagnostic {
     let message = format!("{} is {wanted}, but the instance gives {found}", short(name));
-    Diagnostic::error("data.shape", span, message)
+    let diagnostic = Diagnostic::error("data.shape", span, message);
+    if wanted == "a set" && found == "a set of tuples" {
+        return diagnostic.mend(format!("declare {0} with its places: {0} ⊆ V × V", short(name)));
+    }
+    diagnostic
 }
 
 pub(crate) fn cell(what: &str, span: Span) -> Diagnostic {

@@ -6,7 +6,7 @@
 //! | check | [`check`] | a tree | names and shapes resolved |
 //! | bind | [`bind`] | that and an instance | all data found, definitions evaluated |
 //! | expand | [`Expansion`] | that | a [`model::Model`], in slices |
-//! | print | [`print`] | a tree | Unicode text that reads back as the same tree |
+//! | print | [`print()`] | a tree | Unicode text that reads back as the same tree |
 //!
 //! Nothing here fails on any text: what is wrong comes back as [`Diagnostic`]s with a place
 //! and, where one is known, a mend. [`model()`] does all of it at once, for small things.

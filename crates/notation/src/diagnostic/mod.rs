@@ -1,5 +1,15 @@
 //! Diagnostics: what is wrong, where, and how to mend it. The messages themselves stand in
-//! one file a family, beside their tests.
+//! one file a family; the texts under `tests/fixtures` hold each of them to its place.
+//!
+//! | codes | about |
+//! |---|---|
+//! | `syntax.…` | what cannot be read |
+//! | `name.…` | names: undeclared, declared twice, ambiguous, unused, without a set |
+//! | `shape.…` | indices, sets, numbers, what is not linear |
+//! | `row.…` | domain lines and rows, on the text and on the instance |
+//! | `subset.…` | families over subsets |
+//! | `data.…` | what the instance supplies or lacks |
+//! | `size.…` | limits |
 
 use std::fmt;
 use std::ops::Range;

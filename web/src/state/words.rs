@@ -88,6 +88,13 @@ pub(crate) fn sentence(clause: &str) -> String {
     if ended { clause.to_owned() } else { [clause, "."].concat() }
 }
 
+/// A clause as a sentence of its own: with a capital and a stop.
+pub(crate) fn advice(clause: &str) -> String {
+    let mut letters = clause.chars();
+    let capital: String = letters.next().into_iter().flat_map(char::to_uppercase).collect();
+    sentence(&[capital.as_str(), letters.as_str()].concat())
+}
+
 /// The state of a node in a word or two.
 pub(crate) fn node_state(state: NodeState) -> &'static str {
     match state {
@@ -183,6 +190,8 @@ mod tests {
     #[test]
     fn a_clause_becomes_a_sentence_once() {
         assert_eq!((sentence("x").as_str(), sentence("x.").as_str()), ("x.", "x."));
+        assert_eq!(advice("did you mean `c`?"), "Did you mean `c`?");
+        assert_eq!(advice("give a default"), "Give a default.");
     }
 
     #[test]

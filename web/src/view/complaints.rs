@@ -7,7 +7,7 @@ use web_sys::HtmlTextAreaElement;
 use yew::prelude::*;
 
 use crate::state::pointer::Shared;
-use crate::state::words::sentence;
+use crate::state::words::{advice, sentence};
 use crate::view::paste::BOX;
 
 /// Complaints shown at once.
@@ -70,7 +70,7 @@ fn one(text: &str, complaint: &Complaint) -> Html {
         <>
             <p>
                 <b>{ place }</b>{ sentence(&complaint.message) }
-                if !complaint.mend.is_empty() { { " " }<span class="mend">{ complaint.mend.clone() }</span> }
+                if !complaint.mend.is_empty() { { " " }<span class="mend">{ advice(&complaint.mend) }</span> }
                 { " " }<button type="button" class="link" onclick={show}>{ "Show in the text" }</button>
             </p>
             if !(before.is_empty() && marked.is_empty() && after.is_empty()) {

@@ -13,7 +13,7 @@ use crate::state::board::{BoardAction, Selection};
 use crate::state::document::{DocumentAction, Slot};
 use crate::state::lane::{Lane, Phase};
 use crate::state::pointer::Shared;
-use crate::state::words::{sentence, status};
+use crate::state::words::{advice, sentence, status};
 use crate::view::canvas::TreeCanvas;
 use crate::view::families::Families;
 use crate::view::figure::{figure, gap, share};
@@ -176,7 +176,7 @@ fn failure(error: &ErrorReport) -> Html {
                     for complaint in error.complaints.iter().take(6) {
                         <li>
                             { format!("{} line {}: {}", error.place, complaint.line, sentence(&complaint.message)) }
-                            if !complaint.mend.is_empty() { { " " }<span class="mend">{ complaint.mend.clone() }</span> }
+                            if !complaint.mend.is_empty() { { " " }<span class="mend">{ advice(&complaint.mend) }</span> }
                         </li>
                     }
                 </ul>

@@ -17,7 +17,7 @@ use crate::view::axis::across;
 /// marks are drawn.
 const CURVED: usize = 600;
 const LEAFED: usize = 1_200;
-const EDGED: usize = 3_000;
+const EDGED: usize = 5_000;
 const DENSE: usize = 6_000;
 /// Edges drawn in one stroke: a longer path costs more than its parts.
 const STROKE: usize = 64;

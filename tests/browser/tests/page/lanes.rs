@@ -45,6 +45,12 @@ pub(crate) async fn paste(browser: &Browser, text: &str) -> Outcome<()> {
     browser.paste(&field, text).await
 }
 
+/// Adds a rival from the catalogue.
+pub(crate) async fn add(browser: &Browser, id: &str) -> Outcome<()> {
+    browser.select("[data-testid=catalogue]").await?.select_by_value(id).await?;
+    Ok(browser.find("button", "Add").await?.click().await?)
+}
+
 /// Pastes a round of so many scattered stops that its labels are searched for long, and waits for
 /// its roots.
 pub(crate) async fn paste_long_work(browser: &Browser) -> Outcome<()> {
@@ -57,7 +63,7 @@ pub(crate) async fn paste_long_work(browser: &Browser) -> Outcome<()> {
 }
 
 /// Points scattered by a linear congruential generator (Knuth's MMIX multiplier).
-fn scattered(stops: u32) -> String {
+pub(crate) fn scattered(stops: u32) -> String {
     let mut state: u64 = 2026;
     let mut next = || {
         state =

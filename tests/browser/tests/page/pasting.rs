@@ -7,6 +7,8 @@ use crate::lanes::{paste, status, text};
 
 const TSPLIB: &str = include_str!("../../fixtures/eight-stops.atsp");
 
+const SCENARIO: &str = include_str!("../../fixtures/nine-points.toml");
+
 const BROKEN: &str = "\tYard\tBrook\tChapel\nYard\t\t7\t12\nBrook\t8\t\tsix\nChapel\t13\t5\t\n";
 
 #[tokio::test(flavor = "multi_thread")]
@@ -29,6 +31,18 @@ async fn a_tsplib_file_is_opened_by_its_button() -> Outcome<()> {
         let path = concat!(env!("CARGO_MANIFEST_DIR"), "/fixtures/eight-stops.atsp");
         browser.select("[data-testid=file]").await?.send_keys(path).await?;
         browser.shows("8 stops, 56 drives").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_scenario_brings_its_own_rivals() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        paste(browser, SCENARIO).await?;
+        browser.shows("9 stops, 72 drives").await?;
+        status(browser, "B", "root solved").await?;
+        assert!(browser.text().await?.contains("Multi-commodity flow"));
+        Ok(())
     })
     .await
 }

@@ -6,7 +6,7 @@ use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::visit::{Source, visit};
 
-use crate::lanes::{button, paste_long_work, status, text};
+use crate::lanes::{add, button, paste_long_work, status, text};
 
 /// Makes the page's later workers known to the test.
 const KEEP_WORKERS: &str = "
@@ -21,8 +21,7 @@ const KEEP_WORKERS: &str = "
 async fn running_lane(browser: &Browser) -> Outcome<()> {
     paste_long_work(browser).await?;
     browser.script(KEEP_WORKERS).await?;
-    browser.select("[data-testid=catalogue]").await?.select_by_value("atsp/labels").await?;
-    browser.find("button", "Add").await?.click().await?;
+    add(browser, "atsp/labels").await?;
     status(browser, "D", "root solved").await?;
     button(browser, "D", "run").await?.click().await?;
     status(browser, "D", "searching").await

@@ -1,7 +1,7 @@
 //! Names beside their stops: each name tries places around its stop, near ones first, and takes
-//! the first that covers no other stop, no other name and stays in the frame. Stops with many
-//! neighbours choose first. A name that finds no place is left out; the page then shows it on
-//! focus only.
+//! the first that covers no other stop, no other name and stays in the frame; if there is one, a
+//! place that no line runs through. Stops with many neighbours choose first. A name that finds no
+//! place is left out; the page then shows it on demand only.
 
 use crate::map::{Frame, Point};
 
@@ -67,6 +67,10 @@ impl Space {
             && other.top < self.bottom
     }
 
+    fn holds(&self, at: Point) -> bool {
+        self.left <= at.0 && at.0 <= self.right && self.top <= at.1 && at.1 <= self.bottom
+    }
+
     fn is_inside(&self, frame: Frame) -> bool {
         self.left >= 0.0
             && self.top >= 0.0
@@ -75,9 +79,10 @@ impl Space {
     }
 }
 
-/// Places names of a font size in pixels. O(n²) for n stops.
+/// Places names of a font size in pixels; `lines` are points that lines run through, a few pixels
+/// apart. O(n · (n + points)) for n stops.
 #[must_use]
-pub fn place(wishes: &[Wish<'_>], frame: Frame, size: f64) -> Vec<Option<Placed>> {
+pub fn place(wishes: &[Wish<'_>], lines: &[Point], frame: Frame, size: f64) -> Vec<Option<Placed>> {
     let marks: Vec<Space> =
         wishes.iter().map(|wish| Space::around(wish.at, wish.radius + 1.0)).collect();
     let mut taken: Vec<Space> = Vec::with_capacity(wishes.len());
@@ -88,7 +93,10 @@ pub fn place(wishes: &[Wish<'_>], frame: Frame, size: f64) -> Vec<Option<Placed>
                 && !marks.iter().any(|mark| mark.meets(space))
                 && !taken.iter().any(|other| other.meets(space))
         };
-        let Some((space, leader)) = first_free(&wishes[index], size, fits) else { continue };
+        let clear = |space: &Space| fits(space) && !lines.iter().any(|&at| space.holds(at));
+        let found = first_free(&wishes[index], size, clear);
+        let found = found.or_else(|| first_free(&wishes[index], size, fits));
+        let Some((space, leader)) = found else { continue };
         taken.push(space);
         placed[index] = Some(Placed { x: space.left + 1.0, y: space.bottom - 0.25 * size, leader });
     }
@@ -205,15 +213,26 @@ mod tests {
     #[test]
     fn a_lone_name_stands_to_the_right() {
         let wish = Wish { text: "Ash", at: (100.0, 100.0), radius: 3.0 };
-        let placed = place(&[wish], FRAME, 11.0)[0].unwrap();
+        let placed = place(&[wish], &[], FRAME, 11.0)[0].unwrap();
         assert!(placed.x > 103.0 && placed.leader.is_none());
         assert!((placed.y - 100.0).abs() < 6.0);
     }
 
     #[test]
+    fn a_name_keeps_off_a_line_where_it_can() {
+        let wish = Wish { text: "Ash", at: (100.0, 100.0), radius: 3.0 };
+        let line: Vec<Point> = (0..40).map(|step| (100.0 + f64::from(step) * 4.0, 100.0)).collect();
+        let placed = place(&[wish], &line, FRAME, 11.0)[0].unwrap();
+        assert!(placed.x + text_width("Ash", 11.0) < 100.0);
+        let everywhere: Vec<Point> =
+            (0..10_000).map(|k| (f64::from(k % 100) * 4.0, f64::from(k / 100) * 3.0)).collect();
+        assert!(place(&[wish], &everywhere, FRAME, 11.0)[0].is_some());
+    }
+
+    #[test]
     fn at_the_right_edge_it_turns_to_the_left() {
         let wish = Wish { text: "Birch", at: (396.0, 100.0), radius: 3.0 };
-        let placed = place(&[wish], FRAME, 11.0)[0].unwrap();
+        let placed = place(&[wish], &[], FRAME, 11.0)[0].unwrap();
         assert!(placed.x + text_width("Birch", 11.0) < 394.0);
     }
 
@@ -229,7 +248,7 @@ mod tests {
     #[test]
     fn a_crowd_leaves_names_out_rather_than_cover() {
         let wishes = [Wish { text: "Crossroads", at: (200.0, 150.0), radius: 3.0 }; 60];
-        let placed = place(&wishes, FRAME, 11.0);
+        let placed = place(&wishes, &[], FRAME, 11.0);
         assert!(placed.iter().any(Option::is_some) && placed.iter().any(Option::is_none));
     }
 
@@ -240,7 +259,7 @@ mod tests {
         ) {
             let wishes: Vec<Wish<'_>> =
                 places.iter().map(|&at| Wish { text: "Maple", at, radius: 3.0 }).collect();
-            let placed = place(&wishes, FRAME, 11.0);
+            let placed = place(&wishes, &[], FRAME, 11.0);
             let spaces: Vec<Space> = placed.iter().flatten().map(|p| space("Maple", p, 11.0)).collect();
             for (index, one) in spaces.iter().enumerate() {
                 prop_assert!(!spaces[index + 1..].iter().any(|other| other.meets(one)));

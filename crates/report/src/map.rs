@@ -77,6 +77,14 @@ impl Curve {
         (mix(self.from.0, self.control.0, self.to.0), mix(self.from.1, self.control.1, self.to.1))
     }
 
+    /// Points on the curve about `step` pixels apart, its ends left out.
+    #[must_use]
+    pub fn points(&self, step: f64) -> Vec<Point> {
+        let (dx, dy) = (self.to.0 - self.from.0, self.to.1 - self.from.1);
+        let count = ((dx * dx + dy * dy).sqrt() / step) as u32;
+        (1..count).map(|index| self.at(f64::from(index) / f64::from(count))).collect()
+    }
+
     /// A small arrow just past the middle: its tip and its two ends. `None` on a curve too short
     /// to carry one.
     #[must_use]

@@ -118,22 +118,31 @@ impl Document {
         letter(place)
     }
 
-    /// A title for a rival: its own, else the catalogue's, else its id.
+    /// A title for a rival: its own, else the catalogue's without what stands in brackets, else
+    /// its id.
     pub(crate) fn rival_title(&self, rival: &Rival) -> String {
         if !rival.title.is_empty() {
             return rival.title.clone();
         }
-        let id = rival.from.as_deref().unwrap_or("own formulation");
-        let entry = self.catalogue.iter().find(|entry| entry.id == id);
-        entry.map_or_else(|| id.to_owned(), |entry| entry.title.clone())
+        let listed = self.entry(rival).map(|entry| bracketed(&entry.title).0.to_owned());
+        let id = || rival.from.clone().unwrap_or_else(|| "own formulation".to_owned());
+        listed.unwrap_or_else(id)
+    }
+
+    /// What the catalogue's title says in brackets: who published it.
+    pub(crate) fn rival_source(&self, rival: &Rival) -> String {
+        self.entry(rival).map_or_else(String::new, |entry| bracketed(&entry.title).1.to_owned())
+    }
+
+    fn entry(&self, rival: &Rival) -> Option<&CatalogueEntry> {
+        self.catalogue.iter().find(|entry| rival.from.as_ref() == Some(&entry.id))
     }
 
     /// Whether a rival is known to be no more than a relaxation, so that its best solution need
     /// not be one of the problem.
     pub(crate) fn is_relaxation(&self, rival: &Rival) -> bool {
-        let entry = self.catalogue.iter().find(|entry| rival.from.as_ref() == Some(&entry.id));
         rival.role == Some(Role::Relaxation)
-            || entry.is_some_and(|entry| entry.relaxation)
+            || self.entry(rival).is_some_and(|entry| entry.relaxation)
             || rival.families.values().any(|&state| state == FamilyState::Out)
     }
 
@@ -168,6 +177,12 @@ impl Document {
         rival.families.insert(family, state);
         slot.rival = Shared::new(rival);
     }
+}
+
+/// A title and what stands in brackets at its end.
+fn bracketed(title: &str) -> (&str, &str) {
+    let inner = title.strip_suffix(')').and_then(|title| title.rsplit_once(" ("));
+    inner.unwrap_or((title, ""))
 }
 
 /// The scenario that a text holds, if it is one without an error.
@@ -317,6 +332,12 @@ mod tests {
         assert_eq!(broken.slots.len(), 2);
         assert!(!broken_scenario(&broken.draft.text).unwrap().complaints.is_empty());
         assert!(broken_scenario("0 1\n1 0").is_none());
+    }
+
+    #[test]
+    fn a_title_leaves_its_source_to_a_line_of_its_own() {
+        assert_eq!(bracketed("Cut form (Dantzig 1954)"), ("Cut form", "Dantzig 1954"));
+        assert_eq!(bracketed("Cut form"), ("Cut form", ""));
     }
 
     #[test]

@@ -85,6 +85,7 @@ fn facts(document: &Document) -> Html {
 #[component]
 fn Drawing(props: &InstanceProps) -> Html {
     let values = use_state_eq(|| false);
+    let no_arcs = use_memo((), |()| Shared::new(Vec::new()));
     let Some(accepted) = props.document.accepted.clone() else {
         return html! { <figure class="drawing empty" /> };
     };
@@ -110,7 +111,7 @@ fn Drawing(props: &InstanceProps) -> Html {
             if *values || !has_map {
                 <Grid {report} />
             } else {
-                <Map {report} arcs={Shared::new(Vec::new())} label="Map of the stops" />
+                <Map {report} arcs={(*no_arcs).clone()} label="Map of the stops" />
             }
             <figcaption class="under">
                 <span class="soft">{ caption }</span>

@@ -32,6 +32,8 @@ pub(crate) struct LaneProps {
     pub(crate) letter: String,
     pub(crate) hue: usize,
     pub(crate) title: String,
+    /// Who published it, where that is known.
+    pub(crate) source: String,
     pub(crate) relaxation: bool,
     pub(crate) lane: Shared<Lane>,
     pub(crate) text: Option<Shared<InstanceText>>,
@@ -55,6 +57,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
         >
             <div class="lane-side">
                 { name(props, hands.as_ref()) }
+                if !props.source.is_empty() { <p class="small soft">{ props.source.clone() }</p> }
                 if let Some(rival) = &props.lane.rival {
                     <p class="small soft" data-testid="size" title={of(rival.nonzeros, "coefficient")}>{ size(rival) }</p>
                     <Families slot={props.slot.clone()} rival={rival.clone()} />
@@ -229,7 +232,7 @@ fn drawing(props: &LaneProps, hands: &Hands) -> Html {
     let (Some(axis), Some(tree)) = (props.axis, hands.session.tree(id)) else {
         return Html::default();
     };
-    if props.width <= 0.0 {
+    if props.width <= 0.0 || props.lane.tally.made == 0 {
         return Html::default();
     }
     let board = hands.board.clone();

@@ -16,6 +16,8 @@ const SIZE: f64 = 11.0;
 /// Radius of a stop's mark, and of the first one's.
 const RADIUS: f64 = 3.0;
 const FIRST: f64 = 5.0;
+/// Distance of the points at which names look out for an arc.
+const STEP: f64 = 6.0;
 /// Beyond this many stops names are left to the marks' titles.
 const NAMED: usize = 150;
 
@@ -46,9 +48,8 @@ struct Places {
 pub(crate) fn Map(props: &MapProps) -> Html {
     let node = use_node_ref();
     let width = use_width(&node);
-    let places = use_memo((props.report.clone(), width as u32), |(report, width)| {
-        places(report, f64::from(*width))
-    });
+    let key = (props.report.clone(), props.arcs.clone(), width as u32);
+    let places = use_memo(key, |(report, arcs, width)| places(report, arcs, f64::from(*width)));
     html! {
         <div class="map" ref={node}>
             if width > 0.0 {
@@ -66,7 +67,7 @@ pub(crate) fn Map(props: &MapProps) -> Html {
     }
 }
 
-fn places(report: &InstanceReport, width: f64) -> Places {
+fn places(report: &InstanceReport, arcs: &[Arc], width: f64) -> Places {
     let height = if width * 0.66 < 380.0 { width * 0.66 } else { 380.0 };
     let frame = Frame { width, height, margin: 26.0 };
     let given: Vec<Point> = report.stops.iter().map(|stop| (stop.x, stop.y)).collect();
@@ -78,8 +79,13 @@ fn places(report: &InstanceReport, width: f64) -> Places {
         .enumerate()
         .map(|(index, (stop, &at))| Wish { text: &stop.label, at, radius: radius(index) })
         .collect();
-    let names =
-        if wishes.len() <= NAMED { place(&wishes, frame, SIZE) } else { vec![None; wishes.len()] };
+    let curves = arcs.iter().filter_map(|arc| curve(arc, &stops));
+    let lines: Vec<Point> = curves.flat_map(|curve| curve.points(STEP)).collect();
+    let names = if wishes.len() <= NAMED {
+        place(&wishes, &lines, frame, SIZE)
+    } else {
+        vec![None; wishes.len()]
+    };
     Places { frame, stops, names }
 }
 
@@ -108,7 +114,7 @@ fn stops(report: &InstanceReport, places: &Places) -> Html {
 }
 
 fn arc_path(arc: &Arc, places: &Places, column: Option<u32>) -> Html {
-    let Some(curve) = curve(arc, places) else { return Html::default() };
+    let Some(curve) = curve(arc, &places.stops) else { return Html::default() };
     let chosen = column == Some(arc.column);
     let class = classes!(
         "arc",
@@ -130,7 +136,7 @@ fn arc_path(arc: &Arc, places: &Places, column: Option<u32>) -> Html {
 /// The name of the chosen arc, over everything else.
 fn chosen(props: &MapProps, places: &Places) -> Html {
     let found = props.arcs.iter().find(|arc| props.column == Some(arc.column));
-    let Some((arc, curve)) = found.and_then(|arc| Some((arc, curve(arc, places)?))) else {
+    let Some((arc, curve)) = found.and_then(|arc| Some((arc, curve(arc, &places.stops)?))) else {
         return Html::default();
     };
     let (x, y) = curve.at(0.5);
@@ -144,9 +150,9 @@ fn tinted(props: &MapProps, places: &Places) -> Html {
     html! { <polygon class="tint" points={points(&hull(&inside))} /> }
 }
 
-fn curve(arc: &Arc, places: &Places) -> Option<Curve> {
-    let from = places.stops.get(arc.from as usize)?;
-    let to = places.stops.get(arc.to as usize)?;
+fn curve(arc: &Arc, stops: &[Point]) -> Option<Curve> {
+    let from = stops.get(arc.from as usize)?;
+    let to = stops.get(arc.to as usize)?;
     Some(Curve::between(*from, *to))
 }
 

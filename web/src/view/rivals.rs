@@ -55,7 +55,7 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
                 <LaneView
                     key={slot.id.0} slot={slot.clone()} letter={Document::letter(place)}
                     hue={place % HUES} title={document.rival_title(&slot.rival)}
-                    relaxation={document.is_relaxation(&slot.rival)}
+                    source={document.rival_source(&slot.rival)} relaxation={document.is_relaxation(&slot.rival)}
                     lane={board.lane(slot.id)} run={document.run.clone()} seed={document.seed}
                     text={document.accepted.as_ref().map(|accepted| accepted.text.clone())}
                     {axis} {width} best={best.as_ref().map(|best| best.value)}

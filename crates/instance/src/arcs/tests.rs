@@ -1,3 +1,5 @@
+//! Lists of drives: what is read, what is said, and the places of what is not.
+
 use super::*;
 use crate::number::number_text;
 use crate::{Reading, read};

@@ -1,3 +1,5 @@
+//! Distance tables in all their forms, and the places of broken lines.
+
 use super::*;
 use crate::complaint::Complaint;
 use crate::number::number_text;

@@ -1,3 +1,5 @@
+//! Tables of a spreadsheet, wide and long, and the places of broken lines.
+
 use super::*;
 use crate::number::number_text;
 use crate::{Reading, read};

@@ -1,3 +1,5 @@
+//! TSPLIB files: one matrix in every layout, distances of points, and broken files.
+
 use super::distance::Rule;
 use crate::number::Number;
 use crate::{Instance, Reader, Reading, read};

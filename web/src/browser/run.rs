@@ -33,6 +33,8 @@ pub(crate) struct LaneRun {
     pub(crate) inbox: VecDeque<Envelope>,
     /// Runs out when Stop is not answered.
     pub(crate) watchdog: Option<Timeout>,
+    /// Runs out at the scenario's limit of seconds.
+    pub(crate) limit: Option<Timeout>,
     /// Nodes to search again below the root after the worker was replaced.
     pub(crate) replay: Option<u32>,
     /// Whether the root is solved: after that a request may fail, but not the rival.
@@ -52,6 +54,7 @@ impl LaneRun {
             tree: Shared::new(RefCell::default()),
             inbox: VecDeque::new(),
             watchdog: None,
+            limit: None,
             replay: None,
             rooted: false,
             run_at_root: false,
@@ -72,7 +75,7 @@ impl LaneRun {
         self.job.run = RunNumber(self.job.run.0 + 1);
         self.tree = Shared::new(RefCell::default());
         self.inbox.clear();
-        self.watchdog = None;
+        (self.watchdog, self.limit) = (None, None);
         self.rooted = false;
         self.post(&Request::Load(Box::new(self.job.clone())));
         LaneAction::Load
@@ -126,7 +129,7 @@ impl LaneRun {
     }
 
     fn settled(&mut self) -> crate::state::tree::Tally {
-        self.watchdog = None;
+        (self.watchdog, self.limit) = (None, None);
         let mut tree = self.tree.borrow_mut();
         tree.settle();
         tree.tally()

@@ -109,6 +109,25 @@ impl Session {
     /// Searches on, to the end or for some nodes.
     pub(crate) fn search(&self, id: LaneId, nodes: Option<u32>) {
         self.ask(id, &Request::Run { nodes }, Phase::Running);
+        self.set_limit(id);
+    }
+
+    /// Lets the search stand still after the scenario's seconds, and says so. Time never steers
+    /// the search: it goes on from there as if nothing had been.
+    fn set_limit(&self, id: LaneId) {
+        let mut inner = self.0.borrow_mut();
+        let Some(lane) = inner.lanes.get_mut(&id) else { return };
+        let seconds = lane.job.settings.seconds;
+        if seconds <= 0.0 {
+            return;
+        }
+        let session = self.downgrade();
+        lane.limit = Some(Timeout::new((seconds * 1000.0) as u32, move || {
+            if let Some(session) = upgrade(&session) {
+                session.pause(id);
+                session.tell(id, LaneAction::Notice(out_of_time(seconds)));
+            }
+        }));
     }
 
     /// Asks for the search as soon as the root is solved, from the beginning if the run is over.
@@ -164,9 +183,10 @@ impl Session {
 
     fn ask(&self, id: LaneId, request: &Request, phase: Phase) {
         if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
-            lane.losses = 0;
+            (lane.losses, lane.limit) = (0, None);
             lane.post(request);
         }
+        self.tell(id, LaneAction::Notice(String::new()));
         self.tell(id, LaneAction::Asked(phase));
     }
 
@@ -218,18 +238,21 @@ impl Session {
 
     /// Takes in what waits for this frame.
     fn take_in(&self) {
-        let (board, actions, more) = {
+        let (board, actions, begun, more) = {
             let mut inner = self.0.borrow_mut();
             inner.frame = None;
-            let mut actions = Vec::new();
+            let (mut actions, mut begun) = (Vec::new(), Vec::new());
             for (&id, lane) in &mut inner.lanes {
-                take_in_lane(id, lane, &mut actions);
+                begun.extend(take_in_lane(id, lane, &mut actions).then_some(id));
             }
             let more = inner.lanes.values().any(|lane| !lane.inbox.is_empty());
-            (inner.board.clone(), actions, more)
+            (inner.board.clone(), actions, begun, more)
         };
         for action in actions {
             board.dispatch(action);
+        }
+        for id in begun {
+            self.set_limit(id);
         }
         if more {
             self.request_frame();
@@ -323,7 +346,9 @@ fn upgrade(session: &Weak<RefCell<Inner>>) -> Option<Session> {
     session.upgrade().map(Session)
 }
 
-fn take_in_lane(id: LaneId, lane: &mut LaneRun, actions: &mut Vec<BoardAction>) {
+/// Takes in what waits for a lane; whether its search began with that.
+fn take_in_lane(id: LaneId, lane: &mut LaneRun, actions: &mut Vec<BoardAction>) -> bool {
+    let mut begun = false;
     for reply in lane.take() {
         if let Reply::Node(detail) = reply {
             actions.push(BoardAction::Detail(id, *detail));
@@ -331,10 +356,17 @@ fn take_in_lane(id: LaneId, lane: &mut LaneRun, actions: &mut Vec<BoardAction>) 
         }
         let rooted = matches!(reply, Reply::Root(_));
         actions.extend(lane.hear(reply).map(|action| BoardAction::Lane(id, action)));
-        if rooted {
-            actions.extend(lane.after_root().map(|action| BoardAction::Lane(id, action)));
+        if let Some(action) = rooted.then(|| lane.after_root()).flatten() {
+            actions.push(BoardAction::Lane(id, action));
+            begun = true;
         }
     }
+    begun
+}
+
+fn out_of_time(seconds: f64) -> String {
+    let seconds = report::number::short(seconds);
+    format!("Paused after {seconds} s, the scenario's limit of time; Run goes on from here.")
 }
 
 fn replaced(why: &str, nodes: u32) -> String {

@@ -40,8 +40,8 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
     html! {
         <section class="instance" aria-labelledby="instance-heading">
             <h2 id="instance-heading">{ "Instance" }</h2>
-            <div class="instance-parts">
-                <Drawing document={document.clone()} />
+            <div class={classes!("instance-parts", (!is_drawn(document)).then_some("plain"))}>
+                if is_drawn(document) { <Drawing document={document.clone()} /> }
                 <div>
                     { facts(document) }
                     if let Some(report) = &document.reading {
@@ -52,6 +52,11 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
             </div>
         </section>
     }
+}
+
+/// Whether there are stops to draw, or the instance is still being read and may have some.
+fn is_drawn(document: &Document) -> bool {
+    document.accepted.as_ref().is_none_or(|accepted| !accepted.report.stops.is_empty())
 }
 
 fn is_broken(document: &Document) -> bool {
@@ -98,8 +103,7 @@ fn Drawing(props: &InstanceProps) -> Html {
         let pressed = if *values == shown { "true" } else { "false" };
         html! { <button type="button" aria-pressed={pressed} onclick={choose(shown)}>{ name }</button> }
     };
-    let has_map = !report.stops.is_empty();
-    let caption = if *values || !has_map {
+    let caption = if *values {
         "Darker is longer."
     } else if report.places_computed {
         "Places computed from the distances."
@@ -108,19 +112,17 @@ fn Drawing(props: &InstanceProps) -> Html {
     };
     html! {
         <figure class="drawing" data-testid="drawing">
-            if *values || !has_map {
+            if *values {
                 <Grid {report} />
             } else {
                 <Map {report} arcs={(*no_arcs).clone()} label="Map of the stops" />
             }
             <figcaption class="under">
                 <span class="soft">{ caption }</span>
-                if has_map {
-                    <span class="switch" role="group" aria-label="Drawing">
-                        { switch("Map", false) }
-                        { switch("Values", true) }
-                    </span>
-                }
+                <span class="switch" role="group" aria-label="Drawing">
+                    { switch("Map", false) }
+                    { switch("Values", true) }
+                </span>
             </figcaption>
         </figure>
     }

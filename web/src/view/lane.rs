@@ -130,10 +130,10 @@ fn name(props: &LaneProps, hands: Option<&Hands>) -> Html {
 }
 
 fn size(rival: &RivalReport) -> String {
-    let whole = if rival.integer_columns == rival.columns {
-        "all whole".to_owned()
-    } else {
-        format!("{} whole", count(u64::from(rival.integer_columns)))
+    let whole = match rival.integer_columns {
+        0 => "none whole".to_owned(),
+        all if all == rival.columns => "all whole".to_owned(),
+        some => format!("{} whole", count(u64::from(some))),
     };
     format!(
         "{} · {} · {whole}",

@@ -6,7 +6,7 @@
 //! | check | [`check`] | a tree | names and shapes resolved |
 //! | bind | [`bind`] | that and an instance | all data found, definitions evaluated |
 //! | expand | [`Expansion`] | that | a [`model::Model`], in slices |
-//! | print | [`print()`] | a tree | Unicode text that reads back as the same tree |
+//! | print | [`print()`], [`latex()`] | a tree | Unicode text or LaTeX that reads back as the same tree |
 //!
 //! Nothing here fails on any text: what is wrong comes back as [`Diagnostic`]s with a place
 //! and, where one is known, a mend. [`model()`] does all of it at once, for small things.
@@ -16,6 +16,7 @@ mod check;
 mod diagnostic;
 mod evaluate;
 mod expand;
+mod latex;
 mod lex;
 mod parse;
 mod place;
@@ -29,6 +30,7 @@ pub use bind::{Bound, bind};
 pub use check::{Checked, check};
 pub use diagnostic::{Diagnostic, Edit, Mend, Severity};
 pub use expand::{Expansion, Limits, Progress, States};
+pub use latex::latex;
 pub use parse::{NESTING_LIMIT, Parse, TEXT_LIMIT, parse};
 pub use place::{Span, line_column, utf16_offset, utf16_range};
 pub use print::print;

@@ -15,6 +15,7 @@ mod sets;
 mod usage;
 
 pub(crate) use family::is_arrow;
+pub(crate) use usage::children;
 
 use std::collections::{BTreeMap, BTreeSet};
 use std::rc::Rc;

@@ -8,7 +8,7 @@ use crate::syntax::{
 };
 
 /// All expressions directly inside one.
-pub(super) fn children(expression: &Expression) -> Vec<&Expression> {
+pub(crate) fn children(expression: &Expression) -> Vec<&Expression> {
     match &expression.kind {
         Kind::Number(_) | Kind::Infinity | Kind::EmptySet | Kind::NumberSet(_) => Vec::new(),
         Kind::Name(name) => name.indices.iter().chain(name.superscript.as_deref()).collect(),

@@ -6,6 +6,7 @@ mod tex;
 pub(crate) mod token;
 
 use crate::place::Span;
+pub(crate) use table::letter_command;
 use token::{Gap, Kind, Token};
 
 /// All tokens of `text` from byte `start` on, ending with one of kind `End`. `O(bytes)`.

@@ -196,43 +196,54 @@ pub(super) fn spaces(name: &str) -> bool {
     matches!(name, "quad" | "qquad" | "hskip" | "enspace" | "thinspace")
 }
 
-/// Greek letters and a few others, as names.
+/// Greek letters and a few others with their TeX commands, the usual one first.
+const LETTERS: &[(&str, &str)] = &[
+    ("alpha", "α"),
+    ("beta", "β"),
+    ("gamma", "γ"),
+    ("delta", "δ"),
+    ("epsilon", "ε"),
+    ("varepsilon", "ε"),
+    ("zeta", "ζ"),
+    ("eta", "η"),
+    ("theta", "θ"),
+    ("vartheta", "θ"),
+    ("iota", "ι"),
+    ("kappa", "κ"),
+    ("lambda", "λ"),
+    ("mu", "μ"),
+    ("nu", "ν"),
+    ("xi", "ξ"),
+    ("pi", "π"),
+    ("rho", "ρ"),
+    ("varrho", "ρ"),
+    ("sigma", "σ"),
+    ("tau", "τ"),
+    ("upsilon", "υ"),
+    ("phi", "φ"),
+    ("varphi", "φ"),
+    ("chi", "χ"),
+    ("psi", "ψ"),
+    ("omega", "ω"),
+    ("Gamma", "Γ"),
+    ("Delta", "Δ"),
+    ("Theta", "Θ"),
+    ("Lambda", "Λ"),
+    ("Xi", "Ξ"),
+    ("Phi", "Φ"),
+    ("Psi", "Ψ"),
+    ("Omega", "Ω"),
+    ("ell", "ℓ"),
+];
+
+/// A letter that stands for a TeX command, as a name.
 pub(super) fn letter(name: &str) -> Option<&'static str> {
-    Some(match name {
-        "alpha" => "α",
-        "beta" => "β",
-        "gamma" => "γ",
-        "delta" => "δ",
-        "epsilon" | "varepsilon" => "ε",
-        "zeta" => "ζ",
-        "eta" => "η",
-        "theta" | "vartheta" => "θ",
-        "iota" => "ι",
-        "kappa" => "κ",
-        "lambda" => "λ",
-        "mu" => "μ",
-        "nu" => "ν",
-        "xi" => "ξ",
-        "pi" => "π",
-        "rho" | "varrho" => "ρ",
-        "sigma" => "σ",
-        "tau" => "τ",
-        "upsilon" => "υ",
-        "phi" | "varphi" => "φ",
-        "chi" => "χ",
-        "psi" => "ψ",
-        "omega" => "ω",
-        "Gamma" => "Γ",
-        "Delta" => "Δ",
-        "Theta" => "Θ",
-        "Lambda" => "Λ",
-        "Xi" => "Ξ",
-        "Phi" => "Φ",
-        "Psi" => "Ψ",
-        "Omega" => "Ω",
-        "ell" => "ℓ",
-        _ => return None,
-    })
+    LETTERS.iter().find(|(command, _)| *command == name).map(|(_, letter)| *letter)
+}
+
+/// The TeX command of a letter, without the backslash.
+pub(crate) fn letter_command(letter: &str) -> Option<&'static str> {
+    LETTERS.iter().find(|(_, known)| *known == letter).map(|(command, _)| *command)
 }
 
 /// Small raised and lowered characters with the plain ones they stand for.

@@ -3,6 +3,7 @@
 use super::table;
 use super::token::{Gap, Kind};
 use super::{Lexer, lex_nested};
+use crate::latex::unescaped;
 
 impl Lexer<'_> {
     pub(super) fn backslash(&mut self) {
@@ -180,7 +181,7 @@ impl Lexer<'_> {
             _ => None,
         };
         let end = self.at;
-        self.push_text(kind.unwrap_or(Kind::Text), start, end, inner.trim().to_owned());
+        self.push_text(kind.unwrap_or(Kind::Text), start, end, unescaped(inner.trim()));
     }
 
     /// `\mathrm{dist}` is the name `dist`; one that is no plain name counts as text.

@@ -2,6 +2,7 @@
 
 use super::{Parser, Surroundings};
 use crate::diagnostic::syntax as message;
+use crate::latex::unescaped;
 use crate::lex::lex;
 use crate::lex::token::{Gap, Kind as T};
 use crate::place::Span;
@@ -19,13 +20,13 @@ pub(super) fn title(text: &str) -> (Option<String>, usize) {
         if trimmed.len() > 400 || !is_title(trimmed) {
             return (None, start);
         }
-        return (Some(trimmed.to_owned()), start + line.len());
+        return (Some(unescaped(trimmed)), start + line.len());
     }
     (None, 0)
 }
 
 /// Whether a line holds no relation, part word or TeX environment.
-fn is_title(line: &str) -> bool {
+pub(crate) fn is_title(line: &str) -> bool {
     if line.starts_with("$$") || line.starts_with("\\[") || line.contains("\\begin") {
         return false;
     }

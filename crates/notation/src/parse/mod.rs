@@ -9,6 +9,8 @@ mod number;
 mod primary;
 mod quantifier;
 
+pub(crate) use document::is_title;
+
 use crate::diagnostic::{Diagnostic, syntax as message, tidy};
 use crate::lex::lex;
 use crate::lex::token::{Gap, Kind as T, Token};

@@ -38,14 +38,7 @@ impl Pace {
     /// because a portion may have ended early, and shrinks at once.
     pub(crate) fn learn(&mut self, milliseconds: f64) {
         let fitting = if milliseconds > 0.0 { self.ticks * (PORTION / milliseconds) } else { MOST };
-        let grown = if fitting > 2.0 * self.ticks { 2.0 * self.ticks } else { fitting };
-        self.ticks = if grown < FEWEST {
-            FEWEST
-        } else if grown > MOST {
-            MOST
-        } else {
-            grown
-        };
+        self.ticks = larger(smaller(smaller(fitting, 2.0 * self.ticks), MOST), FEWEST);
     }
 
     /// Whether there is time for another portion in a slice that began and now stands at these
@@ -62,6 +55,14 @@ impl Pace {
         }
         due
     }
+}
+
+fn smaller(a: f64, b: f64) -> f64 {
+    if a < b { a } else { b }
+}
+
+fn larger(a: f64, b: f64) -> f64 {
+    if a > b { a } else { b }
 }
 
 #[cfg(test)]

@@ -35,7 +35,7 @@ fn native(place: &Workplace) -> Result<(), Fault> {
     step("format", || run(cargo(place).args(["fmt", "--all", "--check"])))?;
     step("lint", || run(all_but(place, "clippy", &[REFERENCE]).args(LINT)))?;
     step("documentation", || {
-        let mut doc = all_but(place, "doc", &[REFERENCE, BROWSER]);
+        let mut doc = all_but(place, "doc", &[REFERENCE]);
         run(doc.args(["--no-deps", "--document-private-items"]).env("RUSTDOCFLAGS", "-D warnings"))
     })?;
     step("native tests", || run(&mut all_but(place, "test", &[REFERENCE, BROWSER])))

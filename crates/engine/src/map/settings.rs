@@ -3,7 +3,7 @@
 use record::scenario::{BranchingRule, Run, Selection};
 
 /// The search's settings; what this version does not have is replaced as
-/// [`crate::left_out`] says.
+/// [`crate::left_out()`] says.
 pub(crate) fn settings(run: &Run, seed: u64) -> tree::Settings {
     tree::Settings {
         branching: match run.branching {

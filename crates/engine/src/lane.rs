@@ -12,6 +12,7 @@ use std::rc::Rc;
 use model::Model;
 use record::message::{LaneJob, Progress, Reply, Request};
 use record::results::ErrorReport;
+use record::scenario::Act;
 use tree::{NodeId, Search};
 
 use crate::fault::fault;
@@ -92,6 +93,7 @@ impl Lane {
             Request::Pause => self.pause(outbox),
             Request::Stop => self.stop(outbox),
             Request::Inspect(node) => self.inspect(NodeId(node.0), outbox),
+            Request::Act(act) => self.steer(act, outbox),
             _ => {}
         }
     }
@@ -112,9 +114,18 @@ impl Lane {
     fn begin_search(&mut self, loaded: Loaded, outbox: &mut Outbox) -> Stage {
         let Loaded { title, model, complaints, stops } = loaded;
         let settings = map::settings(&self.job.settings, self.job.seed);
-        let search = Search::new(Rc::clone(&model), settings);
+        let mut search = Search::new(Rc::clone(&model), settings);
         let report = map::rival_report(&model, search.separators(), &title, complaints);
         outbox.push(self.job.run, Reply::Understood(Box::new(report)));
+        for act in &self.job.rival.acts {
+            match map::act_of(&model, act) {
+                Ok(known) => search.replay(act.after, known),
+                Err(why) => {
+                    let acted = map::refused(act, act.after, true, why);
+                    outbox.push(self.job.run, Reply::Acted(Box::new(acted)));
+                }
+            }
+        }
         let stops = Stops::new(&model, &stops);
         Stage::Root(Box::new(Solver { model, stops, search, told: 0 }))
     }
@@ -178,6 +189,7 @@ impl Lane {
         if !events.is_empty() {
             outbox.push(self.job.run, Reply::Batch(events));
         }
+        self.tell_acted(solver, outbox);
         let work = solver.search.work();
         if work.ticks >= solver.told.saturating_add(PROGRESS_EVERY) {
             solver.told = work.ticks;
@@ -185,6 +197,55 @@ impl Lane {
             let progress = Progress { doing, ticks: work.ticks, iterations: work.iterations };
             outbox.push(self.job.run, Reply::Progress(progress));
         }
+    }
+
+    /// Says what became of acts by hand.
+    fn tell_acted(&self, solver: &mut Solver, outbox: &mut Outbox) {
+        for acted in solver.search.take_acted() {
+            let acted = map::acted(&solver.model, &acted);
+            outbox.push(self.job.run, Reply::Acted(Box::new(acted)));
+        }
+    }
+
+    /// Does an act by hand; one made while the search stands still is carried out at once.
+    fn steer(&mut self, act: &Act, outbox: &mut Outbox) {
+        let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
+        self.stage = match stage {
+            Stage::Root(mut solver) => {
+                self.hand_over(act, &mut solver, outbox);
+                Stage::Root(solver)
+            }
+            Stage::Running(mut solver) => {
+                self.hand_over(act, &mut solver, outbox);
+                Stage::Running(solver)
+            }
+            Stage::Waiting(mut solver) => {
+                self.hand_over(act, &mut solver, outbox);
+                let at_once = solver.search.root().is_some() && solver.search.has_acts_waiting();
+                if at_once { Stage::Running(solver) } else { Stage::Waiting(solver) }
+            }
+            Stage::Over(Some(mut solver)) => {
+                self.hand_over(act, &mut solver, outbox);
+                Stage::Over(Some(solver))
+            }
+            earlier => {
+                let acted = map::refused(act, 0, false, "there is no search yet".to_owned());
+                outbox.push(self.job.run, Reply::Acted(Box::new(acted)));
+                earlier
+            }
+        };
+    }
+
+    fn hand_over(&self, act: &Act, solver: &mut Solver, outbox: &mut Outbox) {
+        match map::act_of(&solver.model, act) {
+            Ok(known) => solver.search.act(known),
+            Err(why) => {
+                let nodes = solver.search.summary().nodes;
+                let acted = map::refused(act, nodes, false, why);
+                outbox.push(self.job.run, Reply::Acted(Box::new(acted)));
+            }
+        }
+        self.tell_acted(solver, outbox);
     }
 
     fn run(&mut self, nodes: Option<u32>) {

@@ -1,11 +1,11 @@
 //! What a scenario asks for and this version of the engine does not do: it is said, never
 //! silently ignored.
 
-use record::scenario::{BranchingRule, Rival, Run, Selection};
+use record::scenario::{BranchingRule, Run, Selection};
 
-/// What is left out when this rival is run, one sentence each; empty when nothing is.
+/// What is left out of such a run, one sentence each; empty when nothing is.
 #[must_use]
-pub fn left_out(rival: &Rival, run: &Run) -> Vec<String> {
+pub fn left_out(run: &Run) -> Vec<String> {
     let mut sentences = Vec::new();
     let branching = match run.branching {
         BranchingRule::MostFractional | BranchingRule::Pseudocost => None,
@@ -31,37 +31,30 @@ pub fn left_out(rival: &Rival, run: &Run) -> Vec<String> {
         let classes = general.join(", ");
         sentences.push(format!("general cuts ({classes}) are not in this version; none was used"));
     }
-    if !rival.acts.is_empty() {
-        let count = rival.acts.len();
-        sentences.push(format!("acts by hand are not replayed by this version; {count} left out"));
-    }
     sentences
 }
 
 #[cfg(test)]
 mod tests {
     use super::*;
-    use record::scenario::{Act, ActKind};
 
     #[test]
     fn nothing_is_left_out_of_a_usual_run() {
-        assert!(left_out(&Rival::default(), &Run::default()).is_empty());
+        assert!(left_out(&Run::default()).is_empty());
         let on_demand = Run { cuts: Some(vec!["on demand".to_owned()]), ..Run::default() };
-        assert!(left_out(&Rival::default(), &on_demand).is_empty());
+        assert!(left_out(&on_demand).is_empty());
     }
 
     #[test]
     fn each_thing_left_out_is_named() {
-        let act = Act { after: 1, what: ActKind::Close, node: Some(2), on: Vec::new() };
-        let rival = Rival { acts: vec![act], ..Rival::default() };
         let run = Run {
             branching: BranchingRule::Reliability,
             selection: Selection::BestEstimate,
             cuts: Some(vec!["on demand".to_owned(), "mir".to_owned()]),
             ..Run::default()
         };
-        let sentences = left_out(&rival, &run);
-        assert_eq!(sentences.len(), 4);
+        let sentences = left_out(&run);
+        assert_eq!(sentences.len(), 3);
         assert!(sentences[0].starts_with("reliability branching"));
         assert!(sentences[2].contains("(mir)"));
     }

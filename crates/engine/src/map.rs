@@ -2,6 +2,7 @@
 //!
 //! Zeros are +0 and nothing is NaN on the way out.
 
+mod act;
 mod catalogue;
 mod complaint;
 mod event;
@@ -12,6 +13,7 @@ mod root;
 mod search;
 mod settings;
 
+pub(crate) use act::{act_of, acted, refused};
 pub(crate) use catalogue::catalogue_entries;
 pub(crate) use complaint::{of_diagnostic, of_instance};
 pub(crate) use event::event;

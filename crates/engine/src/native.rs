@@ -2,9 +2,9 @@
 //! without a clock: who calls may look at one between slices.
 
 use record::event::Event;
-use record::message::{LaneJob, Reply, Request, RivalReport};
+use record::message::{Acted, LaneJob, Reply, Request, RivalReport};
 use record::results::{ErrorReport, FamilyReport, RivalResult, RootReport, SearchReport, Status};
-use record::scenario::{Rival, Role, Scenario, letter};
+use record::scenario::{Act, ActKind, Rival, Role, Scenario, letter};
 
 use crate::fault::fault;
 use crate::map::stopped_root;
@@ -59,6 +59,8 @@ pub struct RivalRun {
     pub error: Option<ErrorReport>,
     /// Everything that happened.
     pub events: Vec<Event>,
+    /// Acts by hand that the scenario holds and that did not apply, one sentence each.
+    pub refused: Vec<String>,
     /// Whether the one who watched stopped it.
     pub stopped: bool,
 }
@@ -114,7 +116,7 @@ pub fn result(
         search: run.search.clone(),
         error: run.error.clone(),
         relaxation: given.is_some_and(is_relaxation),
-        left_out: given.map_or_else(Vec::new, |rival| crate::left_out(rival, &scenario.run)),
+        left_out: left_out(scenario, given, run),
         ..RivalResult::default()
     };
     if !scenario.further_instances.is_empty() {
@@ -140,6 +142,31 @@ pub fn result(
         result.families = families(report, run.root.as_ref());
     }
     result
+}
+
+/// What was not done of what the scenario asks for.
+fn left_out(scenario: &Scenario, rival: Option<&Rival>, run: &RivalRun) -> Vec<String> {
+    let mut sentences = crate::left_out(&scenario.run);
+    sentences.extend(run.refused.iter().cloned());
+    if rival.is_some_and(|rival| is_relaxation(rival) && !rival.acts.is_empty()) {
+        sentences.push("acts by hand were left out: a relaxation is not searched".to_owned());
+    }
+    sentences
+}
+
+/// An act that did not apply, in a sentence.
+fn refusal(acted: &Acted) -> Option<String> {
+    let why = acted.refused.as_ref()?;
+    let Act { after, what, node, on } = &acted.act;
+    let what = match what {
+        ActKind::Branch => "branch",
+        ActKind::Close => "close",
+        ActKind::Cut => "cut",
+        ActKind::Stop => "stop",
+    };
+    let at = node.map_or_else(String::new, |node| format!(" at node {node}"));
+    let on = if on.is_empty() { String::new() } else { format!(" on {}", on.join(", ")) };
+    Some(format!("an act by hand ({what}{at}{on}) was left out after {after} nodes: {why}"))
 }
 
 /// How a rival ended as a whole.
@@ -204,6 +231,7 @@ impl Drive {
                 Reply::Batch(events) => self.note(events),
                 Reply::Paused(report) | Reply::Done(report) => self.run.search = Some(*report),
                 Reply::Failed(error) => self.run.error = Some(error),
+                Reply::Acted(acted) => self.run.refused.extend(refusal(&acted)),
                 Reply::Ready { .. }
                 | Reply::InstanceRead(_)
                 | Reply::Catalogue(_)

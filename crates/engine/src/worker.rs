@@ -89,12 +89,14 @@ impl Worker {
                 self.run = job.run;
                 self.lane = Some(Lane::new(*job));
             }
-            Request::Run { .. } | Request::Pause | Request::Stop | Request::Inspect(_) => {
-                match &mut self.lane {
-                    Some(lane) => lane.act(&request, &mut self.outbox),
-                    None => self.reply(Reply::Failed(fault("message", "no rival is loaded"))),
-                }
-            }
+            Request::Run { .. }
+            | Request::Pause
+            | Request::Stop
+            | Request::Inspect(_)
+            | Request::Act(_) => match &mut self.lane {
+                Some(lane) => lane.act(&request, &mut self.outbox),
+                None => self.reply(Reply::Failed(fault("message", "no rival is loaded"))),
+            },
         }
     }
 

@@ -5,7 +5,7 @@ use serde::{Deserialize, Serialize};
 
 use crate::event::{Branching, Event, NodeNumber, NodeState};
 use crate::results::{ErrorReport, FamilyReport, RootReport, SearchReport};
-use crate::scenario::{FamilyState, InstanceText, Rival, Run};
+use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
 
 /// The number of a run of a lane: replies of an older run are dropped by the page.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize)]
@@ -33,6 +33,10 @@ pub enum Request {
     Stop,
     /// Show a node. Answered by [`Reply::Node`].
     Inspect(NodeNumber),
+    /// Steer the search by hand, as soon as no node is in hand; what the act says of nodes
+    /// solved before it is not looked at. Answered by [`Reply::Acted`], and by
+    /// [`Reply::Paused`] or [`Reply::Done`] where the search stood still.
+    Act(Act),
 }
 
 /// A rival to load.
@@ -87,8 +91,21 @@ pub enum Reply {
     Done(Box<SearchReport>),
     /// A node in full.
     Node(Box<NodeDetail>),
+    /// What became of an act by hand.
+    Acted(Box<Acted>),
     /// The request could not be carried out.
     Failed(ErrorReport),
+}
+
+/// What became of an act by hand: one that was asked for, or one that the scenario holds.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Acted {
+    /// The act, with the nodes solved before it took effect: what a scenario needs to replay it.
+    pub act: Act,
+    /// Whether the scenario holds it already.
+    pub replayed: bool,
+    /// Why it was refused and changed nothing, as a clause.
+    pub refused: Option<String>,
 }
 
 /// How far long work is.
@@ -266,6 +283,8 @@ pub struct Arc {
 pub struct ViolatedSubset {
     /// The family.
     pub family: String,
+    /// The labels of the family's outer index tuple; mostly empty.
+    pub tuple: Vec<String>,
     /// The labels of the set.
     pub subset: Vec<String>,
     /// By how much the row is violated.

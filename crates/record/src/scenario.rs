@@ -121,18 +121,19 @@ pub struct Act {
     pub what: ActKind,
     /// The node it was done to.
     pub node: Option<u32>,
-    /// The column it was done on: the variable and its indices.
+    /// What it was done on. A branching: the variable and its indices. A cut: the family, its
+    /// outer index tuple where it has one, and the labels of the set.
     pub on: Vec<String>,
 }
 
 /// The kind of an act.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
 pub enum ActKind {
-    /// Branch on a column.
+    /// Branch on a column at a node that is open, or at the root.
     Branch,
-    /// Close a node.
+    /// Close the open nodes of a subtree.
     Close,
-    /// Add a cut.
+    /// Add a member of a family over subsets that is on demand.
     Cut,
     /// Stop the search.
     Stop,

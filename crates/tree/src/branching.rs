@@ -29,6 +29,7 @@ pub(crate) struct Choice {
 }
 
 impl Choice {
+    /// Split at a fractional value.
     fn new(column: ColumnId, value: f64) -> Self {
         Self { column, value, floor: value.floor() }
     }
@@ -136,24 +137,27 @@ impl Chooser {
     /// A column to branch on where no value is fractional and still the point is no
     /// solution: the first whole column that is not fixed, split next to its value.
     pub(crate) fn any(&self, x: &[f64], bounds: impl Fn(ColumnId) -> (f64, f64)) -> Option<Choice> {
-        self.whole.iter().find_map(|&column| {
-            let (lower, upper) = bounds(column);
-            let value = x[column.index()];
-            let near = value.round();
-            if lower >= upper {
-                None
-            } else if near >= upper {
-                Some(Choice { column, value, floor: near - 1.0 })
-            } else {
-                Some(Choice { column, value, floor: near })
-            }
-        })
+        self.whole.iter().find_map(|&column| split(column, x[column.index()], bounds(column)))
     }
 
     /// The whole columns in order.
     pub(crate) fn whole(&self) -> &[ColumnId] {
         &self.whole
     }
+}
+
+/// A whole column split at its value: between the whole numbers beside a fractional one, else
+/// next to it, so that both sides are smaller. `None` when its bounds leave one value.
+pub(crate) fn split(column: ColumnId, value: f64, (lower, upper): (f64, f64)) -> Option<Choice> {
+    if lower >= upper {
+        return None;
+    }
+    if is_fractional(value) {
+        return Some(Choice::new(column, value));
+    }
+    let near = value.round();
+    let floor = if near >= upper { near - 1.0 } else { near };
+    Some(Choice { column, value, floor })
 }
 
 /// Whether a value of a whole column is fractional.

@@ -28,7 +28,7 @@ impl Search {
         let point = hand.point.as_ref()?;
         hand.proved = self.relaxation.as_ref()?.prove(&point.duals);
         let closed = self.closed(&hand, point);
-        let choice = if closed { None } else { self.choice(&point.x) };
+        let choice = if closed { None } else { self.choice(hand.node, &point.x) };
         let state = match (closed, choice, hand.accepted) {
             (true, _, Some(_)) | (false, None, Some(_)) => NodeState::Integer,
             (true, _, None) => NodeState::Pruned,
@@ -73,9 +73,10 @@ impl Search {
         self.target.closes(point.bound) || hand.accepted.is_some_and(near)
     }
 
-    fn choice(&self, x: &[f64]) -> Option<Choice> {
+    fn choice(&self, node: NodeId, x: &[f64]) -> Option<Choice> {
         let simplex = &self.relaxation.as_ref()?.simplex;
-        let chosen = self.chooser.choose(self.settings.branching, x);
+        let by_hand = self.choice_by_hand(node, x);
+        let chosen = by_hand.or_else(|| self.chooser.choose(self.settings.branching, x));
         chosen.or_else(|| self.chooser.any(x, |column| simplex.bounds(lp::Col(column.0))))
     }
 
@@ -207,17 +208,26 @@ impl Search {
         self.leaf(node, None);
     }
 
-    /// At the end: nodes that could not be solved count as closed where their parent's bound
-    /// closes them.
+    /// At the end: nodes that could not be solved, and nodes closed by hand, count as closed by
+    /// value where the bound that they inherited closes them.
     pub(crate) fn settle(&mut self) {
-        let nodes = std::mem::take(&mut self.ledger.unsolved);
+        let unsolved = std::mem::take(&mut self.ledger.unsolved);
+        self.ledger.unsolved = self.not_closed(unsolved);
+        let closed = std::mem::take(&mut self.ledger.closed);
+        self.ledger.closed = self.not_closed(closed);
+    }
+
+    /// Counts those nodes as leaves that the best known value closes, and gives the others.
+    fn not_closed(&mut self, nodes: Vec<NodeId>) -> Vec<NodeId> {
+        let mut left = Vec::new();
         for node in nodes {
             if self.target.closes(self.tree.node(node).bound) {
                 self.leaf(node, None);
             } else {
-                self.ledger.unsolved.push(node);
+                left.push(node);
             }
         }
+        left
     }
 
     /// Says the bound of the whole tree when it has risen.
@@ -234,9 +244,10 @@ impl Search {
     pub(crate) fn global_bound(&self) -> Option<f64> {
         let in_hand = self.hand.as_ref().map(|hand| self.tree.node(hand.node).bound);
         let root = self.plan.map(|_| self.tree.node(NodeId::ROOT).bound);
-        let unsolved = self.ledger.unsolved.iter().map(|&node| self.tree.node(node).bound);
+        let set_aside = self.ledger.unsolved.iter().chain(&self.ledger.closed);
+        let set_aside = set_aside.map(|&node| self.tree.node(node).bound);
         let open = [self.open.least(), in_hand, root, self.target.best()];
-        open.into_iter().flatten().chain(unsolved).reduce(smaller)
+        open.into_iter().flatten().chain(set_aside).reduce(smaller)
     }
 }
 

@@ -44,6 +44,8 @@ pub enum NodeState {
     Infeasible,
     /// Its bound is no better than the incumbent or the cut-off.
     Pruned,
+    /// Closed by hand while it was open; its bound stands.
+    Closed,
     /// Its relaxation is unbounded.
     Unbounded,
     /// Its relaxation could not be solved; its parent's bound stands.
@@ -87,15 +89,16 @@ pub enum Event {
         iterations: u32,
         /// Rows that separation added.
         rows_added: u32,
-        /// The column it will be branched on, if it is.
+        /// The column it will be branched on, if it is; at the root a person may still choose
+        /// another.
         branch_column: Option<ColumnId>,
     },
-    /// A node was closed because an incumbent closed it: an open one, or the root when a
-    /// heuristic closes it before it has children.
+    /// A node was closed because an incumbent or a person closed it: an open one, or the root
+    /// when a heuristic closes it before it has children.
     Dropped {
         /// Its number.
         node: NodeId,
-        /// [`NodeState::Pruned`].
+        /// [`NodeState::Pruned`] or [`NodeState::Closed`].
         state: NodeState,
     },
     /// A better solution was found.

@@ -20,6 +20,8 @@ pub struct ViolatedSubset {
     /// The family by name; `subtour` in a model without families over subsets that holds round
     /// trips.
     pub family: String,
+    /// The outer index tuple of the family; mostly empty.
+    pub tuple: Vec<LabelId>,
     /// The set.
     pub subset: BTreeSet<LabelId>,
     /// By how much the row is violated.
@@ -103,15 +105,18 @@ impl Search {
         if self.model.subset_families().is_empty() {
             return self.violated_subtours(x);
         }
-        let name = |found: &Violated| {
-            let family = self.model.subset_family(found.family).family;
-            self.model.families()[family.index()].name.clone()
+        let named = |found: Violated| {
+            let family = self.model.subset_family(found.family);
+            ViolatedSubset {
+                family: self.model.families()[family.family.index()].name.clone(),
+                tuple: family.tuple.clone(),
+                subset: found.subset,
+                violation: found.violation,
+            }
         };
         let separators = self.rounds.separators().iter();
         let found = separators.flat_map(|separator| whole_round(separator.clone(), x));
-        found
-            .map(|v| ViolatedSubset { family: name(&v), subset: v.subset, violation: v.violation })
-            .collect()
+        found.map(named).collect()
     }
 
     /// In a model that holds round trips: the sets that arcs leave with less than 1 in all.
@@ -121,6 +126,7 @@ impl Search {
         let arcs: Vec<f64> = trip.arcs.iter().map(|&(_, _, column)| x[column.index()]).collect();
         let subtour = |found: Violated| ViolatedSubset {
             family: "subtour".to_owned(),
+            tuple: Vec::new(),
             subset: trip.stops_of(&found.subset),
             violation: found.violation,
         };

@@ -34,7 +34,8 @@
 //! | item | use it for |
 //! |---|---|
 //! | [`Settings`] | rules and limits |
-//! | [`Search`] | running: `advance`, `run`, `pause`, `stop` |
+//! | [`Search`] | running: `advance`, `run`, `pause`, `stop`; steering: `act`, `replay` |
+//! | [`Act`], [`Acted`], [`Refusal`] | branching, closing, cutting and stopping by hand |
 //! | [`RootResult`], [`Summary`] | what came out |
 //! | [`Event`] | what happened, in order |
 //! | [`Search::inspect`] | one node in full |
@@ -46,8 +47,10 @@
 //! **What is trusted.** A node is closed by floating-point arithmetic with the tolerances that
 //! each file names; each leaf is then checked in exact arithmetic and counted as checked or not.
 //! An LP point is a solution only after an exact check of every row and family. A node that
-//! cannot be solved keeps its parent's bound, and the search then does not claim an optimum.
+//! cannot be solved, and one that a person closed, keeps its bound, and the search then does not
+//! claim an optimum unless that bound is no better than the incumbent.
 
+mod acts;
 mod branching;
 mod decide;
 mod event;
@@ -67,6 +70,7 @@ mod target;
 mod tour;
 mod work;
 
+pub use acts::{Act, Acted, Refusal};
 pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
 pub use inspect::{NodeView, ViolatedSubset};
 pub use root::{RootResult, Status};

@@ -118,6 +118,15 @@ impl Tree {
         id.0 >= 1 && id.0 as usize <= self.nodes.len()
     }
 
+    /// Whether a node is `top` or comes from it. `O(depth)`.
+    pub(crate) fn is_under(&self, id: NodeId, top: NodeId) -> bool {
+        let mut at = Some(id);
+        while let Some(here) = at.filter(|&here| here > top) {
+            at = self.node(here).parent();
+        }
+        at == Some(top)
+    }
+
     /// The branchings from the root to a node. `O(depth)`.
     pub(crate) fn path(&self, id: NodeId) -> Vec<Branch> {
         let mut path = Vec::with_capacity(self.node(id).depth as usize);
@@ -149,6 +158,8 @@ mod tests {
         let grandchild = tree.child(child, up, 0.5, 2.0);
         assert_eq!(tree.path(grandchild), vec![down, up]);
         assert_eq!(tree.node(grandchild).depth, 2);
+        assert!(tree.is_under(grandchild, child) && tree.is_under(child, child));
+        assert!(!tree.is_under(child, grandchild) && tree.is_under(child, NodeId::ROOT));
         assert!(tree.path(NodeId::ROOT).is_empty());
         assert!(!tree.has(NodeId(0)) && !tree.has(NodeId(4)));
     }

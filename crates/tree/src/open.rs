@@ -50,6 +50,22 @@ impl Open {
         gone
     }
 
+    /// Takes out a node; false when it is not open. `bound` is the one it was added with.
+    pub(crate) fn remove(&mut self, node: NodeId, bound: f64) -> bool {
+        self.by_number.remove(&node);
+        self.by_bound.remove(&(key(bound), node))
+    }
+
+    /// Whether a node, which was added with `bound`, is open.
+    pub(crate) fn holds(&self, node: NodeId, bound: f64) -> bool {
+        self.by_bound.contains(&(key(bound), node))
+    }
+
+    /// The open nodes in rising order of their numbers.
+    pub(crate) fn iter(&self) -> impl Iterator<Item = NodeId> {
+        self.by_number.iter().copied()
+    }
+
     /// The smallest bound of an open node.
     pub(crate) fn least(&self) -> Option<f64> {
         self.by_bound.first().map(|&(first, _)| value(first))
@@ -104,6 +120,9 @@ mod tests {
         let mut open = fill();
         assert_eq!(open.drain(|b| b >= 8.0), vec![NodeId(1), NodeId(4)]);
         assert_eq!((open.len(), open.least()), (2, Some(7.0)));
+        assert!(open.holds(NodeId(2), 7.0) && open.remove(NodeId(2), 7.0));
+        assert!(!open.holds(NodeId(2), 7.0) && !open.remove(NodeId(2), 7.0));
+        assert_eq!(open.iter().collect::<Vec<_>>(), vec![NodeId(3)]);
     }
 
     proptest! {

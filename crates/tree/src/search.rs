@@ -9,6 +9,7 @@ use std::rc::Rc;
 use model::{Model, Number};
 use separate::Separator;
 
+use crate::acts::Acts;
 use crate::branching::{Choice, Chooser};
 use crate::event::{Event, NodeId, Origin};
 use crate::node::Tree;
@@ -148,6 +149,8 @@ pub(crate) struct Ledger {
     /// Nodes that could not be solved, and why the last could not.
     pub(crate) unsolved: Vec<NodeId>,
     pub(crate) trouble: String,
+    /// Nodes closed by hand.
+    pub(crate) closed: Vec<NodeId>,
     /// Whether a leaf was closed by its value.
     pub(crate) pruned: bool,
     /// Work done outside of LP, separation and candidates.
@@ -177,6 +180,7 @@ pub struct Search {
     pub(crate) state: State,
     pub(crate) quota: Option<u32>,
     pub(crate) paused: bool,
+    pub(crate) acts: Acts,
     pub(crate) roundings: Roundings,
     pub(crate) ledger: Ledger,
     pub(crate) events: Vec<Event>,
@@ -209,6 +213,7 @@ impl Search {
             state: State::Root,
             quota: None,
             paused: false,
+            acts: Acts::default(),
             roundings: Roundings::default(),
             ledger: Ledger::default(),
             events: vec![Event::Created { node: NodeId::ROOT, parent: None, branching: None }],
@@ -229,8 +234,11 @@ impl Search {
         loop {
             match self.state {
                 State::Finished(_) => return Progress::Finished,
-                State::Waiting => return Progress::Paused,
-                State::Root | State::Searching if self.paused => return Progress::Paused,
+                State::Waiting => return self.rest(),
+                State::Root if self.paused => return Progress::Paused,
+                State::Searching if self.paused && !self.acts.is_waiting() => {
+                    return Progress::Paused;
+                }
                 State::Root | State::Searching => {}
             }
             let now = self.work().ticks;
@@ -244,6 +252,15 @@ impl Search {
         }
     }
 
+    /// The search waits after the root: only acts are carried out.
+    fn rest(&mut self) -> Progress {
+        self.carry_out_acts();
+        match self.state {
+            State::Finished(_) => Progress::Finished,
+            _ => Progress::Paused,
+        }
+    }
+
     /// Searches on: to the end, or until `nodes` more are solved. Also ends a pause.
     pub fn run(&mut self, nodes: Option<u32>) {
         self.paused = false;
@@ -253,12 +270,14 @@ impl Search {
         self.quota = nodes;
     }
 
-    /// Stands still after the slice in hand; nothing is lost.
+    /// Stands still after the slice in hand; nothing is lost. An act made while a node is in hand
+    /// has that node solved first.
     pub fn pause(&mut self) {
         self.paused = true;
     }
 
-    /// Gives up: the search ends as it stands.
+    /// Gives up at once, also inside a node: the search ends as it stands. [`crate::Act::Stop`]
+    /// ends it between two nodes, where it can be replayed.
     pub fn stop(&mut self) {
         if !matches!(self.state, State::Finished(_)) {
             self.end(Ending::Stopped("stopped".to_owned()));
@@ -328,6 +347,7 @@ impl Search {
         }
         self.job = Job::None;
         self.state = State::Finished(ending);
+        self.acts.refuse_all(self.ledger.nodes);
     }
 
     /// An internal value as the user reads it.

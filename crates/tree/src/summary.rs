@@ -92,6 +92,11 @@ impl Search {
             );
             return (Status::Limit, Some(why));
         }
+        let closed = self.ledger.closed.len();
+        if closed > 0 {
+            let nodes = if closed == 1 { "a node" } else { "nodes" };
+            return (Status::Limit, Some(format!("{nodes} closed by hand ({closed})")));
+        }
         match &self.incumbent {
             Some(incumbent) if !incumbent.solution.member => {
                 let why = "not proved: a family over subsets has no exact membership check";

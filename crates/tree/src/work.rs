@@ -58,6 +58,10 @@ impl Search {
         }
         match self.opening {
             Opening::Tour => {
+                self.carry_out_acts();
+                if matches!(self.state, State::Finished(_)) {
+                    return Some(Progress::Finished);
+                }
                 self.opening = Opening::Rounding;
                 if let Some(trip) = &self.trip {
                     self.job = Job::Tour(Box::new(TourSearch::new(trip, self.settings.seed)));
@@ -79,11 +83,16 @@ impl Search {
     }
 
     fn next_node(&mut self) -> Option<Progress> {
+        self.carry_out_acts();
+        if matches!(self.state, State::Finished(_)) {
+            return Some(Progress::Finished);
+        }
         if self.open.len() == 0 {
             self.end(Ending::Complete);
             return Some(Progress::Finished);
         }
-        if self.quota == Some(0) {
+        let rest = self.paused || self.quota == Some(0);
+        if rest && !self.acts.is_waiting() {
             self.paused = true;
             return Some(Progress::Paused);
         }
@@ -91,8 +100,7 @@ impl Search {
             self.end(Ending::Stopped("node limit".to_owned()));
             return Some(Progress::Finished);
         }
-        let tree = &self.tree;
-        let node = self.open.take(self.settings.selection, |node| tree.node(node).bound)?;
+        let node = self.take_open()?;
         self.begin(node)
     }
 

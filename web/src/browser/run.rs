@@ -122,6 +122,7 @@ impl LaneRun {
                 self.watchdog = None;
                 Some(LaneAction::Failed(error))
             }
+            Reply::Acted(acted) => acted.refused.map(LaneAction::Notice),
             Reply::Node(_) | Reply::Ready { .. } | Reply::InstanceRead(_) | Reply::Catalogue(_) => {
                 None
             }

@@ -61,6 +61,7 @@ pub(crate) fn node_state(state: tree::NodeState) -> NodeState {
         tree::NodeState::Integer => NodeState::Integer,
         tree::NodeState::Infeasible => NodeState::Infeasible,
         tree::NodeState::Pruned => NodeState::Pruned,
+        tree::NodeState::Closed => NodeState::Closed,
         tree::NodeState::Unbounded => NodeState::Unbounded,
         tree::NodeState::Unsolved => NodeState::Unsolved,
     }

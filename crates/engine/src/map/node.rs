@@ -51,10 +51,11 @@ fn arc(model: &Model, stops: &Stops, value: &ColumnValue) -> Option<Arc> {
 }
 
 fn violated(model: &Model, found: &tree::ViolatedSubset) -> ViolatedSubset {
-    let subset = found.subset.iter().map(|&label| model.labels().name(label).to_owned());
+    let name = |&label: &model::LabelId| model.labels().name(label).to_owned();
     ViolatedSubset {
         family: found.family.clone(),
-        subset: subset.collect(),
+        tuple: found.tuple.iter().map(name).collect(),
+        subset: found.subset.iter().map(name).collect(),
         violation: tidy(found.violation),
     }
 }

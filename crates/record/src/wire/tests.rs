@@ -2,9 +2,9 @@
 
 use super::*;
 use crate::event::{Event, NodeNumber};
-use crate::message::{LaneJob, Reply, RunNumber};
+use crate::message::{Acted, LaneJob, Reply, RunNumber};
 use crate::results::{ErrorReport, RootReport, SearchReport, SolutionEntry, Status};
-use crate::scenario::{InstanceText, Rival, Run};
+use crate::scenario::{Act, ActKind, InstanceText, Rival, Run};
 
 fn root() -> RootReport {
     RootReport {
@@ -43,6 +43,11 @@ fn search() -> SearchReport {
     }
 }
 
+fn act() -> Act {
+    let on = ["x", "Ash", "Birch"].map(str::to_owned).to_vec();
+    Act { after: 12, what: ActKind::Branch, node: Some(9), on }
+}
+
 #[test]
 fn requests_come_back() {
     let job = LaneJob {
@@ -58,6 +63,7 @@ fn requests_come_back() {
         Request::Load(Box::new(job)),
         Request::Run { nodes: Some(1) },
         Request::Inspect(NodeNumber(9)),
+        Request::Act(act()),
     ] {
         let bytes = write_request(&request).expect("short");
         assert_eq!(read_request(&bytes), Ok(request));
@@ -76,6 +82,11 @@ fn replies_come_back_with_their_empty_fields() {
         Reply::Done(Box::new(search())),
         Reply::Batch(vec![Event::Bound { bound: 1.0, nodes: 2 }]),
         Reply::Failed(failed),
+        Reply::Acted(Box::new(Acted {
+            act: act(),
+            replayed: true,
+            refused: Some("there is no node 9".to_owned()),
+        })),
     ] {
         let envelope = Envelope { run: RunNumber(1), sequence: 5, reply };
         let bytes = write_envelope(&envelope).expect("short");

@@ -1,5 +1,6 @@
 //! Tests of the whole search against enumeration and known trees.
 
+mod acts;
 mod endings;
 mod enumeration;
 mod inspection;

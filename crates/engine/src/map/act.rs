@@ -1,0 +1,92 @@
+//! Acts by hand: from names to places in the model and back.
+
+use std::collections::BTreeSet;
+
+use model::{LabelId, Model, SubsetFamilyId};
+use record::message::Acted;
+use record::scenario::{Act, ActKind};
+
+/// The act on the places of a model; else why there are none, as a clause.
+pub(crate) fn act_of(model: &Model, act: &Act) -> Result<tree::Act, String> {
+    match act.what {
+        ActKind::Branch => {
+            let [variable, tuple @ ..] = act.on.as_slice() else {
+                return Err("it names no column".to_owned());
+            };
+            let tuple: Vec<&str> = tuple.iter().map(String::as_str).collect();
+            let column = model.find_column(variable, &tuple).ok_or_else(|| {
+                format!("the model has no column {}", named(variable, &tuple.join(", ")))
+            })?;
+            Ok(tree::Act::Branch { node: node(act)?, column })
+        }
+        ActKind::Close => Ok(tree::Act::Close { node: node(act)? }),
+        ActKind::Cut => cut(model, &act.on),
+        ActKind::Stop => Ok(tree::Act::Stop),
+    }
+}
+
+fn node(act: &Act) -> Result<tree::NodeId, String> {
+    act.node.map(tree::NodeId).ok_or_else(|| "it names no node".to_owned())
+}
+
+/// A member of a family: by its name, its outer index tuple and the set.
+fn cut(model: &Model, on: &[String]) -> Result<tree::Act, String> {
+    let [name, labels @ ..] = on else { return Err("it names no family".to_owned()) };
+    let families = model.subset_families().iter().enumerate();
+    let mut of_name = families
+        .filter(|(_, family)| model.families()[family.family.index()].name == *name)
+        .peekable();
+    if of_name.peek().is_none() {
+        return Err(format!("there is no family {name} over subsets, on demand"));
+    }
+    let places: Option<Vec<LabelId>> =
+        labels.iter().map(|label| model.labels().find(label)).collect();
+    let places =
+        places.ok_or_else(|| format!("the model does not know all of {}", labels.join(", ")))?;
+    let found = of_name.find(|(_, family)| places.starts_with(&family.tuple));
+    let (index, family) = found.ok_or_else(|| format!("{name} has no such index"))?;
+    let subset: BTreeSet<LabelId> = places[family.tuple.len()..].iter().copied().collect();
+    Ok(tree::Act::Cut { family: SubsetFamilyId::from_index(index), subset })
+}
+
+/// What became of an act, with its names.
+pub(crate) fn acted(model: &Model, acted: &tree::Acted) -> Acted {
+    let refused = acted.refused.as_ref().map(ToString::to_string);
+    let act = written(model, &acted.act, acted.after);
+    Acted { act, replayed: acted.replayed, refused }
+}
+
+/// An act whose names the model does not know.
+pub(crate) fn refused(act: &Act, after: u32, replayed: bool, why: String) -> Acted {
+    Acted { act: Act { after, ..act.clone() }, replayed, refused: Some(why) }
+}
+
+fn written(model: &Model, act: &tree::Act, after: u32) -> Act {
+    let names = |labels: &[LabelId]| -> Vec<String> {
+        labels.iter().map(|&label| model.labels().name(label).to_owned()).collect()
+    };
+    let of =
+        |what, node: Option<tree::NodeId>, on| Act { after, what, node: node.map(|n| n.0), on };
+    match act {
+        tree::Act::Branch { node, column } => {
+            let variable = model.columns()[column.index()].variable;
+            let mut on = vec![model.variables()[variable.index()].name.clone()];
+            on.extend(names(model.column_tuple(*column)));
+            of(ActKind::Branch, Some(*node), on)
+        }
+        tree::Act::Close { node } => of(ActKind::Close, Some(*node), Vec::new()),
+        tree::Act::Cut { family, subset } => {
+            let family = model.subset_family(*family);
+            let set: Vec<LabelId> = subset.iter().copied().collect();
+            let mut on = vec![model.families()[family.family.index()].name.clone()];
+            on.extend(names(&family.tuple));
+            on.extend(names(&set));
+            of(ActKind::Cut, None, on)
+        }
+        tree::Act::Stop => of(ActKind::Stop, None, Vec::new()),
+    }
+}
+
+fn named(name: &str, tuple: &str) -> String {
+    if tuple.is_empty() { name.to_owned() } else { format!("{name}[{tuple}]") }
+}

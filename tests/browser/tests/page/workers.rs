@@ -31,12 +31,16 @@ async fn running_lane(browser: &Browser) -> Outcome<()> {
 async fn a_worker_that_fails_is_replaced_and_its_tree_grown_again() -> Outcome<()> {
     visit(Source::File, async |browser| {
         running_lane(browser).await?;
+        let grown = async |least: u64| Ok(nodes(browser).await? >= least);
+        browser.until("a tree of some size", SOON, async || grown(50).await).await?;
+        let before = nodes(browser).await?;
         // What is no request makes the worker fail, and say so.
         browser.script("workersOfTest.at(-1).postMessage('no request')").await?;
         let noticed = async || Ok(!text(browser, "D", "notice").await?.is_empty());
         browser.until("the lane says that its worker failed", SOON, noticed).await?;
         let started = browser.script("return workersOfTest.length").await?;
         assert_eq!(started, 2, "one worker in place of the other");
+        browser.until("the tree is grown again", SOON, async || grown(before).await).await?;
         goes_on(browser).await
     })
     .await
@@ -53,6 +57,12 @@ async fn a_worker_that_does_not_answer_to_stop_is_replaced() -> Outcome<()> {
         goes_on(browser).await
     })
     .await
+}
+
+/// How many nodes the lane says that it has solved.
+async fn nodes(browser: &Browser) -> Outcome<u64> {
+    let shown = text(browser, "D", "nodes").await?;
+    Ok(shown.chars().filter(char::is_ascii_digit).collect::<String>().parse().unwrap_or(0))
 }
 
 /// The lane can be run on, and the others are as they were.

@@ -90,3 +90,72 @@ fn written(model: &Model, act: &tree::Act, after: u32) -> Act {
 fn named(name: &str, tuple: &str) -> String {
     if tuple.is_empty() { name.to_owned() } else { format!("{name}[{tuple}]") }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use model::{
+        ColumnSpec, FamilyState, ModelBuilder, Number, Relation, Scope, Sense, SubsetFamily,
+        SubsetTerm,
+    };
+
+    /// One column `x[a]` and a family over subsets of {a, b} for each of p and q.
+    fn model() -> Model {
+        let mut builder = ModelBuilder::new("t", Sense::Minimise);
+        let [a, b, p, q] = ["a", "b", "p", "q"].map(|name| builder.label(name));
+        builder.variable("x", false);
+        let spec =
+            ColumnSpec { lower: Some(Number::ZERO), upper: None, cost: Number::ONE, integer: true };
+        let column = builder.column(&[a], &spec).unwrap();
+        let family = builder.family("cover", FamilyState::OnDemand, false);
+        for outer in [p, q] {
+            let term = SubsetTerm { column, coefficient: Number::ONE, scope: Scope::Element(a) };
+            let over_subsets = SubsetFamily {
+                family,
+                tuple: vec![outer],
+                ground: vec![a, b],
+                conditions: Vec::new(),
+                terms: vec![term],
+                weights: vec![Number::ZERO; 2],
+                constant: Number::ZERO,
+                relation: Relation::AtLeast,
+            };
+            builder.subset_family(over_subsets).unwrap();
+        }
+        builder.build()
+    }
+
+    fn act(what: ActKind, node: Option<u32>, on: &[&str]) -> Act {
+        Act { after: 4, what, node, on: on.iter().map(|&word| word.to_owned()).collect() }
+    }
+
+    #[test]
+    fn names_become_places_and_names_again() {
+        let model = model();
+        for given in [
+            act(ActKind::Branch, Some(3), &["x", "a"]),
+            act(ActKind::Close, Some(3), &[]),
+            act(ActKind::Cut, None, &["cover", "p", "a"]),
+            act(ActKind::Cut, None, &["cover", "q", "a", "b"]),
+            act(ActKind::Stop, None, &[]),
+        ] {
+            let known = act_of(&model, &given).unwrap();
+            let told = tree::Acted { act: known, after: 4, replayed: false, refused: None };
+            assert_eq!(acted(&model, &told).act, given);
+        }
+    }
+
+    #[test]
+    fn unknown_names_are_named() {
+        let model = model();
+        for (given, why) in [
+            (act(ActKind::Branch, Some(1), &["x", "b"]), "no column x[b]"),
+            (act(ActKind::Cut, None, &["cover", "a"]), "cover has no such index"),
+            (act(ActKind::Cut, None, &["cover", "p", "z"]), "know all of p, z"),
+            (act(ActKind::Cut, None, &["order", "p"]), "no family order"),
+        ] {
+            let refused = act_of(&model, &given).unwrap_err();
+            assert!(refused.contains(why), "{refused}");
+        }
+    }
+}

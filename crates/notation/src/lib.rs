@@ -2,9 +2,9 @@
 //!
 //! | step | function | takes | gives |
 //! |---|---|---|---|
-//! | read | [`parse`] | a text | a tree with places, and what could not be read |
-//! | check | [`check`] | a tree | names and shapes resolved |
-//! | bind | [`bind`] | that and an instance | all data found, definitions evaluated |
+//! | read | [`parse()`] | a text | a tree with places, and what could not be read |
+//! | check | [`check()`] | a tree | names and shapes resolved |
+//! | bind | [`bind()`] | that and an instance | all data found, definitions evaluated |
 //! | expand | [`Expansion`] | that | a [`model::Model`], in slices |
 //! | print | [`print()`], [`latex()`] | a tree | Unicode text or LaTeX that reads back as the same tree |
 //!

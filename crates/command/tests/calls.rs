@@ -295,6 +295,31 @@ fn what_this_version_leaves_out_is_said() {
 }
 
 #[test]
+fn acts_by_hand_are_replayed_and_one_that_does_not_apply_is_said() {
+    let acts = "\
+[[rival.act]]
+after = 1
+do = \"branch\"
+node = 700
+on = [\"x\", \"Ash\", \"Birch\"]
+[[rival.act]]
+after = 1
+do = \"stop\"
+";
+    let rival = "from = \"atsp/labels\"\n";
+    let text = include_str!("../../engine/tests/scenarios/labels.toml");
+    let text = text.replace(rival, &format!("{rival}{acts}"));
+    let output = hullward(&["run", "-", "--rival", "A", "--json"], &text);
+    assert_eq!(status(&output), 1, "{}", err(&output));
+    let line = &lines(&output)[0];
+    assert_eq!(line["search"]["stopped"], Value::from("stopped by hand"));
+    assert_eq!(line["search"]["nodes"], Value::from(1));
+    let left_out = line["left_out"][0].as_str().expect("one act is refused");
+    assert!(left_out.contains("branch at node 700 on x, Ash, Birch"), "{left_out}");
+    assert!(left_out.contains("was left out after 1 node:"), "{left_out}");
+}
+
+#[test]
 fn every_rival_runs_on_each_of_several_instances() {
     let second = "[[instance]]\ntitle = \"Tuesday\"\ntext = '''\n0 1 9\n9 0 1\n1 9 0\n'''\n";
     let text = two_rivals("").replace("[instance]", "[[instance]]");

@@ -166,7 +166,8 @@ fn refusal(acted: &Acted) -> Option<String> {
     };
     let at = node.map_or_else(String::new, |node| format!(" at node {node}"));
     let on = if on.is_empty() { String::new() } else { format!(" on {}", on.join(", ")) };
-    Some(format!("an act by hand ({what}{at}{on}) was left out after {after} nodes: {why}"))
+    let nodes = if *after == 1 { "node" } else { "nodes" };
+    Some(format!("an act by hand ({what}{at}{on}) was left out after {after} {nodes}: {why}"))
 }
 
 /// How a rival ended as a whole.

@@ -4,7 +4,7 @@
 //! | module | holds |
 //! |---|---|
 //! | [`scenario`] | what a scenario holds (version 1) |
-//! | [`file`] | the scenario file: TOML text to scenario and back, each complaint with its place |
+//! | [`mod@file`] | the scenario file: TOML text to scenario and back, each complaint with its place |
 //! | [`link`] | the link: a scenario text in the fragment of an address |
 //! | [`event`] | what a search reports as it goes |
 //! | [`log`] | the saved log (version 1) and its digest |

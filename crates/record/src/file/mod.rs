@@ -1,7 +1,7 @@
 //! The scenario file: TOML 1.0 text to [`Scenario`] and back.
 //!
 //! Reading accepts every field of version 1, also those that an engine does not act on, and
-//! complains about everything else with its place and the nearest known name; [`print`] writes
+//! complains about everything else with its place and the nearest known name; [`print()`] writes
 //! what was read, so that nothing is lost on the way.
 
 mod decode;

@@ -6,6 +6,7 @@ pub(crate) enum Topic {
     All,
     Run,
     Read,
+    Write,
     List,
     Digest,
 }
@@ -16,6 +17,7 @@ impl Topic {
         Some(match subcommand {
             "run" => Self::Run,
             "read" => Self::Read,
+            "write" => Self::Write,
             "list" => Self::List,
             "digest" => Self::Digest,
             _ => return None,
@@ -29,6 +31,7 @@ pub(crate) fn text(topic: Topic) -> &'static str {
         Topic::All => ALL,
         Topic::Run => RUN,
         Topic::Read => READ,
+        Topic::Write => WRITE,
         Topic::List => LIST,
         Topic::Digest => DIGEST,
     }
@@ -39,6 +42,7 @@ hullward: rival integer formulations side by side on your own data.
 
   hullward run FILE…      run the rivals of scenarios: bounds, trees, solutions
   hullward read FILE      what is understood of an instance, with every complaint
+  hullward write FILE     a rival as MPS, LaTeX or notation, or the scenario
   hullward list [ID]      the shipped formulations, or the text of one
   hullward digest FILE    one line a rival that two machines can compare
   hullward help [CALL]    more on one of them
@@ -74,7 +78,27 @@ const READ: &str = "\
 hullward read FILE
 
 Says what is understood of an instance (a table, points, a TSPLIB file, blocks) or
-of the instances of a scenario, and names each line that is not, with its mend.
+of the instances of a scenario, and names each line that is not, with its mend. A model
+in MPS is described: rows, columns, what must be whole, and every line that other
+programs may read otherwise; as a rival (mps = '''…''') it needs no instance.
+";
+
+const WRITE: &str = "\
+hullward write FILE --as FORM [--rival LETTER] [--instance N] [-o OUT]
+
+Hands over a rival of a scenario, to OUT or to standard output; what who takes it
+should know goes to standard error.
+
+  --as mps        the rival on the instance. The file is read again and compared with
+                  the rival (columns, rows, non-zeros, bound of the relaxation)
+                  before it is given. Rows of families on demand are not in it
+  --as latex      the model section as a paper prints it (amsmath), which hullward
+                  reads back as the same formulation
+  --as text       the same in journal notation
+  --as scenario   the scenario file in its usual spelling
+  --as link       #s1.…, to be put behind the address of the page
+  --rival LETTER  which rival; a scenario or link without it holds them all
+  --instance N    which of several instances (1 unless given)
 ";
 
 const LIST: &str = "\

@@ -16,6 +16,7 @@ mod run;
 mod source;
 mod table;
 mod verify;
+mod write;
 
 use std::io::Write;
 use std::process::ExitCode;
@@ -49,6 +50,7 @@ fn carry_out(call: &Call, out: &mut dyn Write, err: &mut dyn Write) -> std::io::
         Call::Version => writeln!(out, "hullward {}", engine::VERSION).map(|()| Ending::Done),
         Call::Run(options) => run::run(options, out, err),
         Call::Read(file) => read::read(file, out, err),
+        Call::Write(options) => write::write(options, out, err),
         Call::List(id) => list::list(id.as_deref(), out, err),
         Call::Digest { file, slice } => digest::digest(file, *slice, out, err),
     }

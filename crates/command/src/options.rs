@@ -11,6 +11,7 @@ pub(crate) enum Call {
     Version,
     Run(RunOptions),
     Read(String),
+    Write(WriteOptions),
     List(Option<String>),
     Digest { file: String, slice: u64 },
 }
@@ -28,7 +29,62 @@ pub(crate) struct RunOptions {
     pub(crate) log: Option<String>,
 }
 
-const CALLS: [&str; 5] = ["run", "read", "list", "digest", "help"];
+/// How `write` is asked for.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) struct WriteOptions {
+    pub(crate) file: String,
+    /// The letter of the rival.
+    pub(crate) rival: Option<String>,
+    /// The instance, from 1.
+    pub(crate) instance: Option<usize>,
+    pub(crate) form: Form,
+    /// The file that is written.
+    pub(crate) out: Option<String>,
+}
+
+/// What `write` writes.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Form {
+    Mps,
+    Latex,
+    Text,
+    Scenario,
+    Link,
+}
+
+/// The forms by name.
+const FORMS: [(&str, Form); 5] = [
+    ("mps", Form::Mps),
+    ("latex", Form::Latex),
+    ("text", Form::Text),
+    ("scenario", Form::Scenario),
+    ("link", Form::Link),
+];
+
+impl Form {
+    /// Whether it holds the whole scenario where no rival is named.
+    pub(crate) fn is_whole(self) -> bool {
+        matches!(self, Self::Scenario | Self::Link)
+    }
+
+    fn named(word: &str) -> Result<Self, String> {
+        let found = FORMS.iter().find(|(name, _)| *name == word).map(|(_, form)| *form);
+        let known = FORMS.map(|(name, _)| name);
+        found.ok_or_else(|| match word {
+            "report" | "csv" => format!(
+                "--as {word} is not in this version: there are {}; hullward run --json gives every number",
+                known.join(", ")
+            ),
+            _ => {
+                let hint = nearest(word, &known).map(|near| format!("did you mean {near}? "));
+                let hint = hint.unwrap_or_default();
+                format!("there is no form {word}: {hint}there are {}", known.join(", "))
+            }
+        })
+    }
+}
+
+const CALLS: [&str; 6] = ["run", "read", "write", "list", "digest", "help"];
 
 /// The call, or what is wrong with the words.
 pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
@@ -46,6 +102,7 @@ pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
         word if is_help(word) => Ok(Call::Help(Topic::All)),
         "run" => run(rest).map(Call::Run),
         "read" => one(rest, "read").map(Call::Read),
+        "write" => write(rest).map(Call::Write),
         "list" => list(rest),
         "digest" => digest(rest),
         other => Err(unknown("call", other, &CALLS)),
@@ -81,6 +138,36 @@ fn run(words: &[String]) -> Result<RunOptions, String> {
         return Err("run needs a scenario: hullward run FILE…".to_owned());
     }
     Ok(options)
+}
+
+fn write(words: &[String]) -> Result<WriteOptions, String> {
+    let (mut files, mut form) = (Vec::new(), None);
+    let (mut rival, mut instance, mut out) = (None, None, None);
+    let mut words = words.iter();
+    while let Some(word) = words.next() {
+        match word.as_str() {
+            "--as" => form = Some(Form::named(value(word, words.next())?)?),
+            "--rival" => rival = Some(value(word, words.next())?.to_uppercase()),
+            "--instance" => instance = Some(place(value(word, words.next())?)?),
+            "-o" | "--out" => out = Some(value(word, words.next())?.to_owned()),
+            other if is_option(other) => {
+                let known = ["--as", "--rival", "--instance", "--out"];
+                return Err(unknown("option", other, &known));
+            }
+            file => files.push(file.to_owned()),
+        }
+    }
+    let file = one(&files, "write")?;
+    let Some(form) = form else {
+        let known = FORMS.map(|(name, _)| name).join(", ");
+        return Err(format!("write needs --as and one of {known}"));
+    };
+    Ok(WriteOptions { file, rival, instance, form, out })
+}
+
+fn place(word: &str) -> Result<usize, String> {
+    let place = word.parse().ok().filter(|place| *place > 0);
+    place.ok_or_else(|| format!("--instance needs a whole number over 0, not {word}"))
 }
 
 fn list(words: &[String]) -> Result<Call, String> {
@@ -151,6 +238,15 @@ mod tests {
         assert_eq!(call(""), Ok(Call::Help(Topic::All)));
         assert_eq!(call("read --help"), Ok(Call::Help(Topic::Read)));
         assert_eq!(call("list atsp/labels"), Ok(Call::List(Some("atsp/labels".to_owned()))));
+        let write = WriteOptions {
+            file: "a".to_owned(),
+            rival: Some("B".to_owned()),
+            instance: Some(2),
+            form: Form::Mps,
+            out: Some("b.mps".to_owned()),
+        };
+        let line = "write a --rival b --as mps -o b.mps --instance 2";
+        assert_eq!(call(line), Ok(Call::Write(write)));
         let digest = Call::Digest { file: "a".to_owned(), slice: 99 };
         assert_eq!(call("digest a --slice 99"), Ok(digest));
     }
@@ -158,6 +254,9 @@ mod tests {
     #[test]
     fn wrong_words_come_with_the_nearest_right_one() {
         assert!(call("rum a").expect_err("wrong").contains("did you mean run?"));
+        let refused = call("write a --as report").expect_err("refused");
+        assert!(refused.contains("there are mps, latex, text, scenario, link"), "{refused}");
+        assert!(call("write a --as tex").expect_err("wrong").contains("did you mean text?"));
         assert!(call("run a --jsn").expect_err("wrong").contains("did you mean --json?"));
         for wrong in [
             "run",
@@ -166,6 +265,9 @@ mod tests {
             "read",
             "read a b",
             "digest a --slice 0",
+            "write a",
+            "write --as mps",
+            "write a --as mps --instance 0",
         ] {
             assert!(call(wrong).is_err(), "{wrong}");
         }

@@ -17,21 +17,45 @@ pub(crate) fn read(word: &str, out: &mut dyn Write, err: &mut dyn Write) -> Resu
         Err(message) => return writeln!(err, "{message}").map(|()| Ending::Wrong),
     };
     if !file::looks_like_a_scenario(&source.text) {
+        if engine::looks_like_mps(&source.text) {
+            return model(&source, None, "", &source.text, (out, err));
+        }
         let instance = InstanceText { text: source.text.clone(), ..InstanceText::default() };
         return understand(&source, None, &instance, out, err);
     }
     let parsed = file::parse(&source.text);
     complain(err, &source.name, None, &parsed.complaints)?;
     let Some(scenario) = parsed.scenario else { return Ok(Ending::Wrong) };
-    if scenario.instance.is_none() {
+    let mut worst = Ending::Done;
+    let models = scenario.rivals.iter().zip(&parsed.rival_origins);
+    let models: Vec<_> = models
+        .filter_map(|(rival, origin)| rival.mps.as_ref().map(|text| (&rival.title, origin, text)))
+        .collect();
+    if scenario.instance.is_none() && models.is_empty() {
         writeln!(err, "{}: the scenario has no instance", source.name)?;
         return Ok(Ending::Wrong);
     }
-    let mut worst = Ending::Done;
+    for (title, origin, text) in models {
+        worst = worst.max(model(&source, *origin, title, text, (out, err))?);
+    }
     for (instance, origin) in scenario.instances().zip(parsed.instance_origins) {
         worst = worst.max(understand(&source, Some(origin), instance, out, err)?);
     }
     Ok(worst)
+}
+
+/// A whole model in MPS.
+fn model(
+    source: &Source,
+    origin: Option<Origin>,
+    title: &str,
+    text: &str,
+    (out, err): (&mut dyn Write, &mut dyn Write),
+) -> Result<Ending> {
+    let report = engine::mps_report(text);
+    describe(title, &report, out)?;
+    complain(err, &source.name, origin, &report.complaints)?;
+    Ok(if report.usable { Ending::Done } else { Ending::Wrong })
 }
 
 fn understand(
@@ -47,7 +71,7 @@ fn understand(
     for envelope in worker.take() {
         match envelope.reply {
             Reply::InstanceRead(report) => {
-                describe(instance, &report, out)?;
+                describe(&instance.title, &report, out)?;
                 complain(err, &source.name, origin, &report.complaints)?;
                 return Ok(if report.usable { Ending::Done } else { Ending::Wrong });
             }
@@ -58,8 +82,8 @@ fn understand(
     Ok(Ending::Wrong)
 }
 
-fn describe(instance: &InstanceText, report: &InstanceReport, out: &mut dyn Write) -> Result<()> {
-    let titles = [instance.title.as_str(), report.title.as_str(), "instance"];
+fn describe(title: &str, report: &InstanceReport, out: &mut dyn Write) -> Result<()> {
+    let titles = [title, report.title.as_str(), "instance"];
     let title = titles.iter().find(|title| !title.is_empty()).unwrap_or(&"instance");
     writeln!(out, "{title} (read as {})", report.reader)?;
     for fact in &report.facts {

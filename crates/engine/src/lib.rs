@@ -6,6 +6,7 @@
 //! | [`native::run_rival`] | the same worker driven to its end without a page |
 //! | [`log_digest`] | one line that two machines can compare |
 //! | [`prepare`] | the model of a rival, for checks |
+//! | [`mps`](fn@mps), [`latex`], [`notation_text`] | a rival handed over to others |
 //!
 //! Nothing here reads a clock, and nothing runs long without [`Worker::advance`]. What comes
 //! out is the same for every slice size; replies that would only repeat how far the work is are
@@ -13,10 +14,12 @@
 
 mod digest;
 mod fault;
+mod handover;
 mod lane;
 mod left_out;
 mod load;
 mod map;
+mod mps;
 pub mod native;
 mod outbox;
 mod readings;
@@ -24,8 +27,10 @@ mod warm;
 mod worker;
 
 pub use digest::log_digest;
+pub use handover::{HandOver, Refusal, latex, mps, notation_text};
 pub use left_out::left_out;
 pub use load::prepare;
+pub use mps::{looks_like_mps, mps_report};
 pub use worker::Worker;
 
 /// The version of the engine: it stands in saved logs, and beside saved results.

@@ -1,5 +1,5 @@
 //! From a rival's text and an instance's text to the model: read, parse, check, bind, and
-//! expansion in slices.
+//! expansion in slices. A rival in MPS is a model already.
 
 use std::collections::BTreeMap;
 use std::rc::Rc;
@@ -9,15 +9,24 @@ use model::{FamilyState, Model};
 use notation::{Diagnostic, Expansion, Limits};
 use record::message::LaneJob;
 use record::results::ErrorReport;
-use record::scenario::{Rival, Scenario};
+use record::scenario::{InstanceText, Rival, Scenario};
 
 use crate::fault::{fault, unknown};
 use crate::map::{of_diagnostic, of_instance};
 use crate::readings::Readings;
 
-/// A rival that is being expanded.
+/// A rival that is being expanded, or that was read as a model.
 #[derive(Debug)]
-pub(crate) struct Loading {
+pub(crate) enum Loading {
+    /// Journal notation on its way.
+    Notation(Box<Notation>),
+    /// MPS.
+    Model(Box<Loaded>),
+}
+
+/// Journal notation that is being expanded.
+#[derive(Debug)]
+pub(crate) struct Notation {
     title: String,
     text: String,
     warnings: Vec<Diagnostic>,
@@ -45,6 +54,10 @@ impl Loading {
     /// # Errors
     /// What cannot be read, with its places in the text that it is in.
     pub(crate) fn begin(readings: &mut Readings, job: &LaneJob) -> Result<Self, ErrorReport> {
+        if let (None, None, Some(text)) = (&job.rival.from, &job.rival.text, &job.rival.mps) {
+            let stops = job.instance.as_ref().map(|given| stops(readings, given));
+            return model_in_mps(text, &job.rival, stops.unwrap_or_default());
+        }
         let (text, title) = formulation(&job.rival)?;
         let Some(given) = &job.instance else {
             return Err(fault("scenario", "the scenario has no instance"));
@@ -64,12 +77,18 @@ impl Loading {
         let states = states(&job.rival);
         let expansion = Expansion::new(bound, &states, Limits::default());
         let wanted = job.rival.families.clone();
-        Ok(Self { title, text, warnings: found, expansion, reading, wanted })
+        let notation = Notation { title, text, warnings: found, expansion, reading, wanted };
+        Ok(Self::Notation(Box::new(notation)))
     }
 
     /// Expands for about `ticks`; whether there is more to do.
     pub(crate) fn advance(&mut self, ticks: u64) -> bool {
-        self.expansion.advance(ticks) == notation::Progress::Working
+        match self {
+            Self::Notation(notation) => {
+                notation.expansion.advance(ticks) == notation::Progress::Working
+            }
+            Self::Model(_) => false,
+        }
     }
 
     /// The model.
@@ -77,6 +96,15 @@ impl Loading {
     /// # Errors
     /// Rows that cannot be made, and families that were asked for and are not there.
     pub(crate) fn finish(self) -> Result<Loaded, ErrorReport> {
+        match self {
+            Self::Notation(notation) => notation.finish(),
+            Self::Model(loaded) => Ok(*loaded),
+        }
+    }
+}
+
+impl Notation {
+    fn finish(self) -> Result<Loaded, ErrorReport> {
         let Self { title, text, mut warnings, expansion, reading, wanted } = self;
         let (model, further) = expansion
             .finish()
@@ -88,11 +116,8 @@ impl Loading {
                 return Err(unknown("rival", "constraint family", name, &known));
             }
         }
-        let titles = [title.as_str(), model.title(), "untitled"];
-        let title =
-            titles.into_iter().find(|title| !title.is_empty()).unwrap_or_default().to_owned();
         Ok(Loaded {
-            title,
+            title: entitled(&title, &model),
             complaints: warnings.iter().map(|found| of_diagnostic(&text, found)).collect(),
             stops: reading.instance.as_ref().map_or_else(Vec::new, |i| i.stops().to_vec()),
             model: Rc::new(model),
@@ -105,18 +130,64 @@ impl Loading {
 /// # Errors
 /// As the replies of a worker give them.
 pub fn prepare(scenario: &Scenario, rival: usize) -> Result<Rc<Model>, ErrorReport> {
+    load(scenario, (0, rival)).map(|loaded| loaded.model)
+}
+
+/// A rival on an instance, both by place, all at once.
+///
+/// # Errors
+/// As the replies of a worker give them.
+pub(crate) fn load(
+    scenario: &Scenario,
+    (instance, rival): (usize, usize),
+) -> Result<Loaded, ErrorReport> {
     let Some(rival) = scenario.rivals.get(rival) else {
         return Err(fault("scenario", "the scenario has no such rival"));
     };
-    let job =
-        LaneJob { instance: scenario.instance.clone(), rival: rival.clone(), ..LaneJob::default() };
+    let instance = scenario.instances().nth(instance).cloned();
+    let job = LaneJob { instance, rival: rival.clone(), ..LaneJob::default() };
     let mut loading = Loading::begin(&mut Readings::default(), &job)?;
     while loading.advance(1_000_000) {}
-    loading.finish().map(|loaded| loaded.model)
+    loading.finish()
+}
+
+/// A rival in MPS, which needs no instance; `stops` are those of the instance, for the map.
+fn model_in_mps(text: &str, rival: &Rival, stops: Vec<String>) -> Result<Loading, ErrorReport> {
+    let (model, complaints) = crate::mps::read(text)?;
+    let known: Vec<&str> = model.families().iter().map(|family| family.name.as_str()).collect();
+    for (name, state) in &rival.families {
+        if !known.contains(&name.as_str()) {
+            return Err(unknown("rival", "constraint family", name, &known));
+        }
+        if *state != record::scenario::FamilyState::In {
+            let message = format!(
+                "the rows of a model in MPS are in: {name} cannot be switched; take them out of the text"
+            );
+            return Err(fault("rival", message));
+        }
+    }
+    let title = entitled(&rival.title, &model);
+    Ok(Loading::Model(Box::new(Loaded { title, complaints, stops, model: Rc::new(model) })))
+}
+
+/// The stops of an instance; none where it cannot be read.
+fn stops(readings: &mut Readings, given: &InstanceText) -> Vec<String> {
+    let reading = readings.read(given).ok();
+    let instance = reading.as_ref().and_then(|reading| reading.instance.as_ref());
+    instance.map_or_else(Vec::new, |instance| instance.stops().to_vec())
+}
+
+/// The title given to a rival, else that of its model.
+fn entitled(given: &str, model: &Model) -> String {
+    let titles = [given, model.title(), "untitled"];
+    titles.into_iter().find(|title| !title.is_empty()).unwrap_or_default().to_owned()
 }
 
 /// The notation text of a rival and the title given to it.
-fn formulation(rival: &Rival) -> Result<(String, String), ErrorReport> {
+///
+/// # Errors
+/// No such formulation, or a rival without notation.
+pub(crate) fn formulation(rival: &Rival) -> Result<(String, String), ErrorReport> {
     match (&rival.from, &rival.text, &rival.mps) {
         (Some(id), None, None) => match catalogue::find(id) {
             Some(entry) => Ok((entry.text.to_owned(), rival.title.clone())),
@@ -129,7 +200,7 @@ fn formulation(rival: &Rival) -> Result<(String, String), ErrorReport> {
         (None, Some(text), None) => Ok((text.clone(), rival.title.clone())),
         (None, None, Some(_)) => Err(fault(
             "scenario",
-            "this version does not read MPS: write the rival in journal notation",
+            "the rival is a model in MPS, without journal notation: it can be written --as mps",
         )),
         _ => Err(fault("scenario", "the rival has not exactly one formulation")),
     }

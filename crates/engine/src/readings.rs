@@ -9,6 +9,7 @@ use record::scenario::InstanceText;
 
 use crate::fault::unknown;
 use crate::map::instance_report;
+use crate::mps;
 
 /// The last text that was read, with what came out of it.
 #[derive(Debug, Default)]
@@ -22,6 +23,14 @@ impl Readings {
     /// # Errors
     /// A reader that does not exist.
     pub(crate) fn read(&mut self, text: &InstanceText) -> Result<Rc<Reading>, ErrorReport> {
+        if is_mps(text) {
+            let complaint = mps::no_instance(&text.text);
+            return Err(ErrorReport {
+                message: complaint.message.clone(),
+                complaints: vec![complaint],
+                place: "instance".to_owned(),
+            });
+        }
         if let Some((reader, known, reading)) = &self.last
             && *reader == text.reader
             && *known == text.text
@@ -42,8 +51,22 @@ impl Readings {
     /// # Errors
     /// A reader that does not exist.
     pub(crate) fn report(&mut self, text: &InstanceText) -> Result<InstanceReport, ErrorReport> {
+        if is_mps(text) {
+            let mut report = mps::mps_report(&text.text);
+            report.usable = false;
+            report.complaints.insert(0, mps::no_instance(&text.text));
+            return Ok(report);
+        }
         let reading = self.read(text)?;
         Ok(instance_report(&text.text, &reading))
+    }
+}
+
+/// Whether a text is a whole model in MPS, said to be one or looking like one.
+fn is_mps(text: &InstanceText) -> bool {
+    match text.reader.as_deref() {
+        Some(name) => name == mps::READER,
+        None => mps::looks_like_mps(&text.text),
     }
 }
 

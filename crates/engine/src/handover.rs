@@ -1,0 +1,119 @@
+//! A rival handed over to others: as MPS that was read again and compared, as journal notation,
+//! as LaTeX.
+
+mod compare;
+
+use model::mps as format;
+use record::message::Complaint;
+use record::results::ErrorReport;
+use record::scenario::{Rival, Scenario};
+
+use crate::fault::fault;
+use crate::load::{Loaded, formulation, load};
+use crate::map::of_diagnostic;
+use compare::compare;
+
+/// A text to hand over.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct HandOver {
+    /// The text.
+    pub text: String,
+    /// What who takes it should know, one sentence each.
+    pub notes: Vec<String>,
+    /// What was said about the rival itself.
+    pub complaints: Vec<Complaint>,
+}
+
+/// Why nothing is handed over.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub enum Refusal {
+    /// The rival or its instance is wrong, or cannot be said in that form.
+    Wrong(ErrorReport),
+    /// What was written is not what was meant: our fault.
+    Broken(String),
+}
+
+impl From<ErrorReport> for Refusal {
+    fn from(error: ErrorReport) -> Self {
+        Self::Wrong(error)
+    }
+}
+
+/// A rival on an instance (both by place from 0) as MPS. The text is read by our own reader
+/// before it is offered, and its columns, rows, non-zeros and linear relaxation are compared
+/// with those of the rival.
+///
+/// # Errors
+/// A rival that cannot be made or whose numbers MPS cannot say; a text that reads otherwise.
+pub fn mps(scenario: &Scenario, place: (usize, usize)) -> Result<HandOver, Refusal> {
+    let Loaded { model, complaints, .. } = load(scenario, place)?;
+    let written = format::write(&model).map_err(|error| fault("rival", error.to_string()))?;
+    let (again, warnings) = format::read(&written.text).map_err(|found| {
+        let first = found.first().map_or("", |one| one.message.as_str());
+        Refusal::Broken(format!("the MPS text cannot be read again: {first}"))
+    })?;
+    let mut notes = written.notes;
+    notes.extend(warnings.into_iter().map(|warning| warning.message));
+    notes.extend(compare(&model, &again).map_err(Refusal::Broken)?);
+    Ok(HandOver { text: written.text, notes, complaints })
+}
+
+/// The journal notation of a rival, in one spelling.
+///
+/// # Errors
+/// A rival without notation, or one whose notation cannot be read.
+pub fn notation_text(scenario: &Scenario, rival: usize) -> Result<HandOver, Refusal> {
+    printed(scenario, rival, notation::print)
+}
+
+/// The model section of a rival in LaTeX; [`notation::latex`] says how.
+///
+/// # Errors
+/// A rival without notation, or one whose notation cannot be read.
+pub fn latex(scenario: &Scenario, rival: usize) -> Result<HandOver, Refusal> {
+    let mut handed = printed(scenario, rival, notation::latex)?;
+    handed.notes.push("LaTeX needs \\usepackage{amsmath,amssymb}".to_owned());
+    Ok(handed)
+}
+
+fn printed(
+    scenario: &Scenario,
+    rival: usize,
+    print: fn(&notation::syntax::Formulation) -> String,
+) -> Result<HandOver, Refusal> {
+    let Some(rival) = scenario.rivals.get(rival) else {
+        return Err(fault("scenario", "the scenario has no such rival").into());
+    };
+    let (text, _) = formulation(rival)?;
+    let parse = notation::parse(&text);
+    let complaints: Vec<Complaint> =
+        parse.diagnostics.iter().map(|found| of_diagnostic(&text, found)).collect();
+    if complaints.iter().any(|complaint| complaint.error) {
+        let message = "the notation cannot be read".to_owned();
+        return Err(ErrorReport { message, complaints, place: "rival".to_owned() }.into());
+    }
+    let text_again = print(&parse.tree);
+    if notation::parse(&text_again).tree != parse.tree {
+        return Err(Refusal::Broken("what is printed reads as another formulation".to_owned()));
+    }
+    Ok(HandOver { text: text_again, notes: not_in_notation(rival, &text), complaints })
+}
+
+/// What a rival has that its printed notation does not say.
+fn not_in_notation(rival: &Rival, text: &str) -> Vec<String> {
+    let mut notes = Vec::new();
+    let begins = |line: &&str| line.trim_start().starts_with(['#', '%']);
+    let comments = text.lines().filter(begins).count();
+    if comments > 0 {
+        notes.push(format!("lines of comment are not in it: {comments}"));
+    }
+    if !rival.families.is_empty() {
+        let names: Vec<&str> = rival.families.keys().map(String::as_str).collect();
+        let names = names.join(", ");
+        notes.push(format!("which families are in, on demand or out is not in it: {names}"));
+    }
+    notes
+}
+
+#[cfg(test)]
+mod tests;

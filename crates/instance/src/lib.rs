@@ -1,6 +1,6 @@
 //! Sets, tables and geometry, and the readers of pasted text.
 //!
-//! [`read`] takes a text and gives a [`Reading`]: an [`Instance`] where the text could be read,
+//! [`read()`] takes a text and gives a [`Reading`]: an [`Instance`] where the text could be read,
 //! what was understood in sentences, and every place that was not, with its mend. Numbers are
 //! exact: decimal text becomes a rational. Nothing here fails or panics on any text.
 //!

@@ -2,7 +2,7 @@
 //!
 //! MPS is a punched-card format without one standard (its first description is that of the
 //! Mathematical Programming System/360; Murtagh, *Advanced Linear Programming*, McGraw-Hill
-//! 1981, chapter 9, prints it). Where readers disagree, [`read`] takes what most take today,
+//! 1981, chapter 9, prints it). Where readers disagree, [`read()`] takes what most take today,
 //! and says so by a warning whenever it matters:
 //!
 //! | where readers disagree | the reading here | code |

@@ -1,4 +1,4 @@
-//! Writing: a model as an MPS text that others, and [`super::read`], read as the same model.
+//! Writing: a model as an MPS text that others, and [`super::read()`], read as the same model.
 
 use std::fmt;
 use std::fmt::Write as _;

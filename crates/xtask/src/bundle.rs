@@ -18,8 +18,9 @@ use crate::pack::pack;
 use crate::process::{run, step};
 use crate::workplace::Workplace;
 
-/// What the whole page may weigh as a server would send it, in bytes of gzip.
-const BUDGET: usize = 600 * 1024;
+/// What the whole page may weigh as a server would send it, in bytes of gzip: links, files and undo
+/// brought it past the 600 KB it was first held to.
+const BUDGET: usize = 640 * 1024;
 
 const PAGE: &str = "hullward-web";
 const ENGINE: &str = "hullward-worker";
@@ -160,7 +161,7 @@ mod tests {
         let Err(fault) = within_budget(BUDGET + 1) else { panic!("let through") };
         assert_eq!(
             fault.to_string(),
-            "the page weighs 601 KB under gzip, over its budget of 600 KB"
+            "the page weighs 641 KB under gzip, over its budget of 640 KB"
         );
     }
 }

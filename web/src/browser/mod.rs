@@ -3,5 +3,7 @@
 pub(crate) mod frame;
 pub(crate) mod run;
 pub(crate) mod session;
+pub(crate) mod share;
 pub(crate) mod size;
+pub(crate) mod store;
 pub(crate) mod worker;

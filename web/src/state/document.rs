@@ -2,13 +2,12 @@
 
 use std::rc::Rc;
 
+use crate::state::history::History;
+use crate::state::lane::LaneId;
+use crate::state::pointer::Shared;
 use record::file::{looks_like_a_scenario, parse};
 use record::message::{CatalogueEntry, InstanceReport};
 use record::scenario::{FamilyState, InstanceText, Rival, Role, Run, Scenario, letter};
-use yew::Reducible;
-
-use crate::state::lane::LaneId;
-use crate::state::pointer::Shared;
 
 /// The readers, as the scenario file names them, with a word for people.
 pub(crate) const READERS: [(&str, &str); 7] = [
@@ -49,6 +48,8 @@ pub(crate) struct Document {
     pub(crate) title: String,
     /// Whether a person gave the title.
     titled: bool,
+    /// The notes.
+    pub(crate) notes: Shared<String>,
     /// The seed.
     pub(crate) seed: u64,
     /// How rivals are run.
@@ -63,14 +64,26 @@ pub(crate) struct Document {
     pub(crate) slots: Vec<Slot>,
     /// The shipped formulations.
     pub(crate) catalogue: Shared<Vec<CatalogueEntry>>,
+    /// The scenario it was opened from: what the page does not edit is kept there.
+    pub(crate) rest: Shared<Scenario>,
+    /// What can be undone and redone.
+    pub(crate) history: Shared<History>,
     next: u32,
 }
 
 /// What a person, or the authoring worker, does to the document.
 #[derive(Debug)]
 pub(crate) enum DocumentAction {
+    /// A scenario is opened in place of this one.
+    Open(Scenario),
+    /// The last change is taken back.
+    Undo,
+    /// What was taken back is done again.
+    Redo,
     /// The title is given.
     Title(String),
+    /// The notes are others.
+    Notes(String),
     /// The text in the box is another.
     Text(String),
     /// The reader is another; `None` leaves it to be guessed.
@@ -90,27 +103,42 @@ pub(crate) enum DocumentAction {
 impl Document {
     /// The document of a scenario.
     pub(crate) fn open(scenario: Scenario) -> Self {
-        Self::open_after(scenario, 1, Shared::new(Vec::new()))
+        Self::numbered(scenario, 1)
     }
 
     /// The document of a scenario whose lanes are numbered from `next`.
-    fn open_after(scenario: Scenario, next: u32, catalogue: Shared<Vec<CatalogueEntry>>) -> Self {
+    fn numbered(mut scenario: Scenario, next: u32) -> Self {
+        let rivals = std::mem::take(&mut scenario.rivals);
         let mut document = Self {
             titled: false,
-            title: scenario.title,
+            title: std::mem::take(&mut scenario.title),
+            notes: Shared::new(std::mem::take(&mut scenario.notes)),
             seed: scenario.seed,
-            run: Shared::new(scenario.run),
-            draft: Shared::new(scenario.instance.unwrap_or_default()),
+            run: Shared::new(scenario.run.clone()),
+            draft: Shared::new(scenario.instance.take().unwrap_or_default()),
             reading: None,
             accepted: None,
             slots: Vec::new(),
-            catalogue,
+            catalogue: Shared::new(Vec::new()),
+            rest: Shared::new(scenario),
+            history: Shared::new(History::default()),
             next,
         };
-        for rival in scenario.rivals {
+        for rival in rivals {
             document.push(rival);
         }
         document
+    }
+
+    /// The document of another scenario, opened in this one's place.
+    fn open_another(&self, scenario: Scenario) -> Self {
+        Self::numbered(scenario, self.next).again(self, self.history.clone())
+    }
+
+    /// This document in place of another: what is not of the scenario goes on.
+    pub(crate) fn again(&self, other: &Self, history: Shared<History>) -> Self {
+        let next = if self.next > other.next { self.next } else { other.next };
+        Self { catalogue: other.catalogue.clone(), history, next, ..self.clone() }
     }
 
     /// The letter of the rival at a place.
@@ -163,8 +191,8 @@ impl Document {
         if !report.usable {
             return;
         }
-        let first = self.accepted.is_none();
-        if !first && !self.titled {
+        let another = self.accepted.as_ref().is_some_and(|accepted| accepted.text != text);
+        if another && !self.titled {
             self.title =
                 if report.title.is_empty() { UNTITLED.to_owned() } else { report.title.clone() };
         }
@@ -199,12 +227,14 @@ pub(crate) fn broken_scenario(text: &str) -> Option<InstanceReport> {
     })
 }
 
-impl Reducible for Document {
-    type Action = DocumentAction;
-
-    fn reduce(self: Rc<Self>, action: DocumentAction) -> Rc<Self> {
+impl Document {
+    /// The document after an action; its history is the matter of [`crate::state::history`].
+    pub(crate) fn apply(self: Rc<Self>, action: DocumentAction) -> Rc<Self> {
         let mut document = (*self).clone();
         match action {
+            DocumentAction::Open(scenario) => return document.open_another(scenario).into(),
+            DocumentAction::Undo | DocumentAction::Redo => return self,
+            DocumentAction::Notes(notes) => document.notes = Shared::new(notes),
             DocumentAction::Title(title) => {
                 document.titled = !title.trim().is_empty();
                 document.title = title;
@@ -214,8 +244,7 @@ impl Reducible for Document {
                     return self;
                 }
                 if let Some(scenario) = scenario(&text) {
-                    let (next, catalogue) = (document.next, document.catalogue.clone());
-                    return Self::open_after(scenario, next, catalogue).into();
+                    return document.open_another(scenario).into();
                 }
                 let reader = document
                     .draft
@@ -247,7 +276,7 @@ impl Reducible for Document {
 /// Whether a text stands in place of the old one instead of changing it: less than half of it was
 /// there before, counted from both ends. Then the reader that was right for the old one may be
 /// wrong.
-fn is_another(old: &str, new: &str) -> bool {
+pub(crate) fn is_another(old: &str, new: &str) -> bool {
     let longer = old.len().max(new.len());
     let start = old.bytes().zip(new.bytes()).take_while(|(a, b)| a == b).count();
     let rest = (old.len() - start).min(new.len() - start);
@@ -258,6 +287,8 @@ fn is_another(old: &str, new: &str) -> bool {
 
 #[cfg(test)]
 mod tests {
+    use yew::Reducible;
+
     use super::*;
 
     fn document() -> Rc<Document> {

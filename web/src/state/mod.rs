@@ -3,8 +3,10 @@
 
 pub(crate) mod board;
 pub(crate) mod document;
+pub(crate) mod history;
 pub(crate) mod lane;
 pub(crate) mod outline;
 pub(crate) mod pointer;
+pub(crate) mod share;
 pub(crate) mod tree;
 pub(crate) mod words;

@@ -3,7 +3,6 @@
 use yew::prelude::*;
 
 use crate::browser::session::Session;
-use crate::demo::demo;
 use crate::state::board::Board;
 use crate::state::document::{Document, DocumentAction};
 use crate::view::announcer::Announcer;
@@ -11,12 +10,15 @@ use crate::view::evidence::Evidence;
 use crate::view::hands::Hands;
 use crate::view::inspector::Inspector;
 use crate::view::instance::Instance;
+use crate::view::notes::Notes;
 use crate::view::rivals::Rivals;
+use crate::view::share::{Share, opening};
 
 /// The page.
 #[component]
 pub(crate) fn App() -> Html {
-    let document = use_reducer(|| Document::open(demo()));
+    let opening = use_memo((), |()| opening());
+    let document = use_reducer(|| Document::open(opening.scenario.clone()));
     let board = use_reducer(Board::default);
     let hands = use_memo((), |()| Hands {
         session: Session::new(board.dispatcher(), document.dispatcher()),
@@ -28,11 +30,13 @@ pub(crate) fn App() -> Html {
     html! {
         <ContextProvider<Hands> context={(*hands).clone()}>
             <Header title={document.title.clone()} />
+            <Share document={document.clone()} opening={(*opening).clone()} />
             <main>
                 <Instance document={document.clone()} />
                 <Rivals document={document.clone()} board={board.clone()} />
                 <Inspector document={document.clone()} board={board.clone()} />
-                <Evidence {document} board={board.clone()} />
+                <Evidence document={document.clone()} board={board.clone()} />
+                <Notes notes={document.notes.clone()} />
             </main>
             <Announcer {board} />
         </ContextProvider<Hands>>

@@ -1,0 +1,147 @@
+//! The scenario out and in: link, file, and what the browser keeps; undo and redo.
+//!
+//! | module | holds |
+//! |---|---|
+//! | `link` | the panel that a link is copied from |
+//! | `open` | opening files, by a button or dropped anywhere |
+//! | `keep` | saving by itself, restoring, and other tabs |
+//! | `notice` | what is said about all that |
+
+mod keep;
+mod link;
+mod notice;
+mod open;
+
+use yew::prelude::*;
+
+use crate::browser::share::download;
+use crate::state::document::{Document, DocumentAction};
+use crate::state::share::file_name;
+use crate::view::hands::use_hands;
+
+pub(crate) use keep::{Opening, opening};
+
+use keep::{use_keeping, use_links};
+use link::LinkPanel;
+use notice::{Notice, NoticeView};
+use open::{OpenFile, use_drop};
+
+/// The id of the button that opens the link's panel.
+const COPY: &str = "copy-link";
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct ShareProps {
+    pub(crate) document: Document,
+    pub(crate) opening: Opening,
+}
+
+/// The row of buttons, the link's panel and the notice.
+#[component]
+pub(crate) fn Share(props: &ShareProps) -> Html {
+    let hands = use_hands();
+    let notice = use_state_eq(|| Notice::at_opening(&props.opening));
+    let panel = use_state_eq(|| false);
+    let say = {
+        let notice = notice.setter();
+        use_callback((), move |said: Notice, ()| notice.set(said))
+    };
+    let dispatcher = hands.map(|hands| hands.document);
+    let act = {
+        let dispatcher = dispatcher.clone();
+        use_callback((), move |action: DocumentAction, ()| {
+            if let Some(document) = &dispatcher {
+                document.dispatch(action);
+            }
+        })
+    };
+    use_keeping(&props.document, &props.opening, &say);
+    use_links(&act, &say);
+    use_drop(&act, &say);
+    use_undo_keys(&act);
+    let toggle = {
+        let (set, open) = (panel.setter(), *panel);
+        Callback::from(move |_: MouseEvent| set.set(!open))
+    };
+    let close = {
+        let set = panel.setter();
+        Callback::from(move |said: Option<Notice>| {
+            set.set(false);
+            crate::view::inspector::focus(COPY);
+            if let Some(said) = said {
+                say.emit(said);
+            }
+        })
+    };
+    let save = save(&props.document);
+    let say_notice = notice.setter();
+    html! {
+        <div class="share">
+            <div class="row" role="group" aria-label="The scenario">
+                <button
+                    type="button" id={COPY} data-testid="copy-link" onclick={toggle}
+                    aria-expanded={if *panel { "true" } else { "false" }}
+                >{ "Copy link" }</button>
+                <button type="button" data-testid="save-file" onclick={save.reform(|_| ())}>{ "Save file" }</button>
+                <OpenFile act={act.clone()} say={Callback::from(move |said| say_notice.set(said))} />
+                { step("Undo", props.document.history.undo_words(), &act, || DocumentAction::Undo) }
+                { step("Redo", props.document.history.redo_words(), &act, || DocumentAction::Redo) }
+            </div>
+            if *panel { <LinkPanel document={props.document.clone()} {save} {close} /> }
+            <NoticeView notice={(*notice).clone()} {act} hide={let set = notice.setter(); Callback::from(move |()| set.set(Notice::default()))} />
+        </div>
+    }
+}
+
+fn save(document: &Document) -> Callback<()> {
+    let document = document.clone();
+    Callback::from(move |()| download(&file_name(&document.title), &document.file()))
+}
+
+/// Undo or Redo; it keeps its place, and the focus, while there is nothing to do.
+fn step(
+    name: &'static str,
+    words: Option<&'static str>,
+    act: &Callback<DocumentAction>,
+    action: fn() -> DocumentAction,
+) -> Html {
+    let onclick = act.reform(move |_: MouseEvent| action());
+    let label = words.map_or_else(|| name.to_owned(), |words| format!("{name}: {words}"));
+    html! {
+        <button
+            type="button" data-testid={name.to_lowercase()} {onclick} aria-label={label.clone()} title={label}
+            aria-disabled={if words.is_some() { "false" } else { "true" }}
+        >{ name }</button>
+    }
+}
+
+/// Ctrl+Z and Ctrl+Shift+Z (or Ctrl+Y) outside text fields, which have an undo of their own.
+#[hook]
+fn use_undo_keys(act: &Callback<DocumentAction>) {
+    use gloo_events::{EventListener, EventListenerOptions};
+    use wasm_bindgen::JsCast;
+    let act = act.clone();
+    use_effect_with((), move |()| {
+        let options = EventListenerOptions::enable_prevent_default();
+        let window = gloo_utils::window();
+        let listener = EventListener::new_with_options(&window, "keydown", options, move |event| {
+            let Some(key) = event.dyn_ref::<KeyboardEvent>() else { return };
+            let target = key.target().and_then(|target| target.dyn_into::<web_sys::Element>().ok());
+            let typing = target.is_some_and(|target| is_text_field(&target));
+            if typing || !(key.ctrl_key() || key.meta_key()) || key.alt_key() {
+                return;
+            }
+            let action = match (key.key().to_lowercase().as_str(), key.shift_key()) {
+                ("z", false) => DocumentAction::Undo,
+                ("z", true) | ("y", false) => DocumentAction::Redo,
+                _ => return,
+            };
+            key.prevent_default();
+            act.emit(action);
+        });
+        move || drop(listener)
+    });
+}
+
+fn is_text_field(element: &web_sys::Element) -> bool {
+    matches!(element.tag_name().as_str(), "TEXTAREA" | "INPUT")
+}

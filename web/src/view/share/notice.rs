@@ -1,0 +1,100 @@
+//! What is said about links, files and what the browser keeps, in one place under the buttons.
+
+use record::message::Complaint;
+use record::scenario::Scenario;
+use yew::prelude::*;
+
+use crate::demo::demo;
+use crate::state::document::DocumentAction;
+use crate::state::share::Refusal;
+use crate::state::words::{advice, sentence};
+use crate::view::share::keep::Opening;
+
+/// Complaints shown at once.
+const SHOWN: usize = 8;
+
+/// A notice; empty when there is nothing to say.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub(crate) struct Notice {
+    words: String,
+    complaints: Vec<Complaint>,
+    offers_demo: bool,
+}
+
+impl Notice {
+    /// A sentence.
+    pub(crate) fn of(words: impl Into<String>) -> Self {
+        Self { words: words.into(), ..Self::default() }
+    }
+
+    /// Why something was not opened.
+    pub(crate) fn refusal(refusal: Refusal) -> Self {
+        Self { words: refusal.words, complaints: refusal.complaints, offers_demo: false }
+    }
+
+    /// What was opened.
+    pub(crate) fn opened(scenario: &Scenario, from: &str) -> Self {
+        let title = if scenario.title.is_empty() { "without a title" } else { &scenario.title };
+        Self::of(format!("Opened from {from}: {title}."))
+    }
+
+    /// What is said when the page opens.
+    pub(crate) fn at_opening(opening: &Opening) -> Self {
+        let said = match &opening.refusal {
+            Some(refusal) => Self::refusal(refusal.clone()),
+            None if opening.from_link => Self::opened(&opening.scenario, "the link"),
+            None => Self::default(),
+        };
+        if !opening.restored {
+            return said;
+        }
+        let words = [said.words.as_str(), "Restored from this browser."].join(" ");
+        Self { words: words.trim().to_owned(), offers_demo: true, ..said }
+    }
+}
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct NoticeProps {
+    pub(crate) notice: Notice,
+    pub(crate) act: Callback<DocumentAction>,
+    pub(crate) hide: Callback<()>,
+}
+
+/// The notice; the region is always there, so that what comes into it is spoken.
+#[component]
+pub(crate) fn NoticeView(props: &NoticeProps) -> Html {
+    let notice = &props.notice;
+    let start = {
+        let (act, hide) = (props.act.clone(), props.hide.clone());
+        Callback::from(move |_: MouseEvent| {
+            act.emit(DocumentAction::Open(demo()));
+            hide.emit(());
+        })
+    };
+    let more = notice.complaints.len().saturating_sub(SHOWN) as u64;
+    html! {
+        <div class="said" role="status" data-testid="share-notice">
+            if !notice.words.is_empty() {
+                <p class="row">
+                    <span>{ notice.words.clone() }</span>
+                    if notice.offers_demo {
+                        <button type="button" data-testid="start-from-demo" onclick={start}>{ "Start from the demo instead" }</button>
+                    }
+                    <button type="button" class="link" onclick={props.hide.reform(|_| ())}>{ "Hide" }</button>
+                </p>
+                if !notice.complaints.is_empty() {
+                    <ul class="complaints errors">
+                        for complaint in notice.complaints.iter().take(SHOWN) {
+                            <li class={if complaint.error { "Error" } else { "Warning" }}>
+                                <b>{ format!("Line {}, column {}: ", complaint.line, complaint.column) }</b>
+                                { sentence(&complaint.message) }{ " " }
+                                <span class="mend">{ advice(&complaint.mend) }</span>
+                            </li>
+                        }
+                    </ul>
+                }
+                if more > 0 { <p>{ format!("and {}", report::number::of(more, "further complaint")) }</p> }
+            }
+        </div>
+    }
+}

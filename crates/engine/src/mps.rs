@@ -38,8 +38,7 @@ pub(crate) fn read(text: &str) -> Result<(Model, Vec<Complaint>), ErrorReport> {
     }
 }
 
-/// What an MPS text says, as a report of a reader. It is usable as a rival: who wants an
-/// instance adds [`no_instance`].
+/// What an MPS text says, as a report of a reader. It is usable as a rival, not as an instance.
 #[must_use]
 pub fn mps_report(text: &str) -> InstanceReport {
     let report = InstanceReport { reader: READER.to_owned(), ..InstanceReport::default() };

@@ -15,6 +15,9 @@ mod solving;
 #[path = "page/nodes.rs"]
 mod nodes;
 
+#[path = "page/share.rs"]
+mod share;
+
 #[path = "page/workers.rs"]
 mod workers;
 

@@ -1,0 +1,234 @@
+//! A scenario leaves the page as a link or a file and comes back the same; the browser keeps it.
+
+use hullward_tests_browser::Outcome;
+use hullward_tests_browser::browser::{Browser, SOON};
+use hullward_tests_browser::visit::{Source, visit};
+use record::file::parse;
+use record::link::{pack, unpack};
+use serde_json::json;
+
+use crate::lanes::{paste, status, value};
+
+const SCENARIO: &str = include_str!("../../fixtures/nine-points.toml");
+
+async fn press(browser: &Browser, name: &str) -> Outcome<()> {
+    Ok(browser.select(&format!("[data-testid={name}]")).await?.click().await?)
+}
+
+/// What is said about links, files and the store.
+async fn says(browser: &Browser, words: &str) -> Outcome<()> {
+    let script = "return document.querySelector('[data-testid=share-notice]').textContent";
+    let what = format!("the notice says {words:?}");
+    browser
+        .until(&what, SOON, async || {
+            Ok(browser.script(script).await?.as_str().unwrap_or_default().contains(words))
+        })
+        .await
+}
+
+/// Opens the page anew in the same browser.
+async fn reload(browser: &Browser) -> Outcome<()> {
+    browser.script("globalThis.before = true; setTimeout(() => location.reload(), 0)").await?;
+    let opened = "return !globalThis.before && document.documentElement?.dataset.boot === 'done'";
+    browser
+        .until("the page opens anew", SOON, async || Ok(browser.script(opened).await? == true))
+        .await
+}
+
+async fn bounds(browser: &Browser) -> Outcome<Vec<Option<f64>>> {
+    let mut bounds = Vec::new();
+    for letter in ["A", "B"] {
+        status(browser, letter, "root solved").await?;
+        bounds.push(value(browser, letter, "root-bound").await?);
+    }
+    Ok(bounds)
+}
+
+/// Waits for the bounds of another scenario, whose lanes may take the place of lanes with bounds.
+async fn bounds_become(browser: &Browser, expected: &[Option<f64>]) -> Outcome<()> {
+    browser
+        .until("the same root bounds", SOON, async || Ok(bounds(browser).await? == expected))
+        .await
+}
+
+/// A link copied where the browser does not let the page copy.
+async fn copied_by_hand(browser: &Browser) -> Outcome<String> {
+    browser.script("navigator.clipboard.writeText = () => Promise.reject(new Error('no'))").await?;
+    press(browser, "copy-link").await?;
+    browser.shows("whoever has it can read them").await?;
+    press(browser, "copy-now").await?;
+    let field = browser.select("[data-testid=link-field]").await?;
+    let chosen = "const field = document.activeElement; \
+                  return field.value.slice(field.selectionStart, field.selectionEnd)";
+    let link = field.prop("value").await?.unwrap_or_default();
+    let all = async || Ok(browser.script(chosen).await? == json!(link));
+    browser.until("the link is selected", SOON, all).await?;
+    press(browser, "copy-cancel").await?;
+    Ok(link)
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_link_opens_to_the_same_root_bounds() -> Outcome<()> {
+    let mut link = String::new();
+    let mut there = Vec::new();
+    visit(Source::File, async |browser| {
+        paste(browser, SCENARIO).await?;
+        browser.shows("9 stops, 72 drives").await?;
+        there = bounds(browser).await?;
+        link = copied_by_hand(browser).await?;
+        Ok(())
+    })
+    .await?;
+    assert_eq!(parse(&unpack(&link)?).scenario, parse(SCENARIO).scenario);
+    assert!(there.iter().all(Option::is_some), "{there:?}");
+    let fragment = &link[link.find('#').unwrap_or(0)..];
+    visit(Source::File, async |browser| {
+        browser.script_with("location.hash = arguments[0]", vec![json!(fragment)]).await?;
+        says(browser, "Opened from the link").await?;
+        bounds_become(browser, &there).await?;
+        // The page opened with the link in its address shows the same.
+        reload(browser).await?;
+        says(browser, "Opened from the link").await?;
+        bounds_become(browser, &there).await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_link_is_copied_where_the_browser_allows_it() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        let keep = "navigator.clipboard.writeText = async (text) => { globalThis.copied = text; }";
+        browser.script(keep).await?;
+        press(browser, "copy-link").await?;
+        press(browser, "copy-now").await?;
+        says(browser, "copied").await?;
+        let link = browser.script("return globalThis.copied").await?;
+        let link = link.as_str().unwrap_or_default();
+        let scenario = parse(&unpack(link)?).scenario.ok_or("the link holds no scenario")?;
+        assert_eq!(scenario.rivals.len(), 3);
+        let focus = browser.script("return document.activeElement.id").await?;
+        assert_eq!(focus, "copy-link");
+        Ok(())
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_link_that_cannot_be_opened_leaves_the_page_as_it_is() -> Outcome<()> {
+    let whole = pack(SCENARIO)?;
+    let cut = whole[..whole.len() / 2].to_owned();
+    visit(Source::File, async |browser| {
+        let title = browser.select("[data-testid=title]").await?;
+        let before = title.prop("value").await?;
+        for fragment in [cut.as_str(), "#s9.AAAA"] {
+            browser.script_with("location.hash = arguments[0]", vec![json!(fragment)]).await?;
+            says(browser, "The page is as it was").await?;
+            assert_eq!(title.prop("value").await?, before);
+        }
+        says(browser, "newer version").await?;
+        reload(browser).await?;
+        says(browser, "newer version").await?;
+        status(browser, "C", "root solved").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn the_browser_keeps_what_was_changed() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        paste(browser, SCENARIO).await?;
+        browser.shows("9 stops, 72 drives").await?;
+        let kept =
+            "return Object.values(localStorage).some((text) => text.includes('hullward = 1'))";
+        browser
+            .until("it is saved", SOON, async || Ok(browser.script(kept).await? == true))
+            .await?;
+        reload(browser).await?;
+        says(browser, "Restored from this browser").await?;
+        browser.shows("9 stops, 72 drives").await?;
+        press(browser, "start-from-demo").await?;
+        browser.shows("18 stops").await?;
+        // The demo took its place; Undo brings it back.
+        press(browser, "undo").await?;
+        browser.shows("9 stops, 72 drives").await?;
+        let other =
+            "dispatchEvent(new StorageEvent('storage', { key: Object.keys(localStorage)[0] }))";
+        browser.script(other).await?;
+        says(browser, "Another tab").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_full_store_is_said_and_breaks_nothing() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        let full = "Storage.prototype.setItem = () => { \
+                    throw new DOMException('full', 'QuotaExceededError'); }";
+        browser.script(full).await?;
+        paste(browser, SCENARIO).await?;
+        says(browser, "does not keep your changes").await?;
+        browser.shows("9 stops, 72 drives").await?;
+        assert!(bounds(browser).await?.iter().all(Option::is_some));
+        Ok(())
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_file_is_saved_and_opened() -> Outcome<()> {
+    let folder = std::env::temp_dir().join(format!("hullward-share-{}", std::process::id()));
+    std::fs::create_dir_all(&folder)?;
+    let file = folder.join("mine.hullward.toml");
+    let broken = folder.join("broken.toml");
+    std::fs::write(&broken, "hullward = 1\ntitel = \"x\"\n")?;
+    let outcome = visit(Source::File, async |browser| {
+        paste(browser, SCENARIO).await?;
+        browser.shows("9 stops, 72 drives").await?;
+        let there = bounds(browser).await?;
+        let catch = "const make = URL.createObjectURL; \
+            URL.createObjectURL = (blob) => { globalThis.blob = blob; return make.call(URL, blob); }; \
+            HTMLAnchorElement.prototype.click = function () { globalThis.file = this.download; };";
+        browser.script(catch).await?;
+        press(browser, "save-file").await?;
+        let name = browser.script("return globalThis.file").await?;
+        assert!(name.as_str().unwrap_or_default().ends_with(".hullward.toml"), "{name}");
+        let read = "globalThis.blob.text().then(arguments[arguments.length - 1])";
+        let text = browser.script_async(read, Vec::new()).await?;
+        let text = text.as_str().unwrap_or_default();
+        assert_eq!(parse(text).scenario, parse(SCENARIO).scenario);
+        std::fs::write(&file, text)?;
+        browser.script("document.querySelector('[data-testid=notes]').focus()").await?;
+        let input = browser.select("[data-testid=open-file]").await?;
+        input.send_keys(&broken.display().to_string()).await?;
+        says(browser, "Line 2, column 1").await?;
+        input.send_keys(&file.display().to_string()).await?;
+        says(browser, "Opened from mine.hullward.toml").await?;
+        bounds_become(browser, &there).await
+    })
+    .await;
+    std::fs::remove_dir_all(&folder)?;
+    outcome
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_change_is_undone_by_button_and_by_key() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        status(browser, "C", "root solved").await?;
+        let lanes = "return document.querySelectorAll('[data-testid=lane]').length";
+        let has = async |count: u64| {
+            let what = format!("{count} lanes");
+            browser.until(&what, SOON, async || Ok(browser.script(lanes).await? == count)).await
+        };
+        crate::lanes::add(browser, "atsp/labels").await?;
+        has(4).await?;
+        press(browser, "undo").await?;
+        has(3).await?;
+        let key = "document.activeElement.dispatchEvent(new KeyboardEvent('keydown', \
+                   { key: 'z', ctrlKey: true, shiftKey: arguments[0], bubbles: true, cancelable: true }))";
+        browser.script_with(key, vec![json!(true)]).await?;
+        has(4).await?;
+        browser.script_with(key, vec![json!(false)]).await?;
+        has(3).await
+    })
+    .await
+}

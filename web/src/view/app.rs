@@ -69,7 +69,7 @@ fn Header(props: &HeaderProps) -> Html {
                     maxlength="120" spellcheck="false" value={props.title.clone()} {oninput}
                 />
             </h1>
-            <p class="soft">{ "Hullward · nothing leaves this tab" }</p>
+            <p class="soft">{ "Hullward · nothing leaves this browser" }</p>
         </header>
     }
 }

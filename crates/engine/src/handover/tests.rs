@@ -1,3 +1,5 @@
+//! What is handed over: texts that read back, and what is refused.
+
 use super::*;
 use record::scenario::{FamilyState, InstanceText};
 

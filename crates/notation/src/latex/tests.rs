@@ -1,3 +1,5 @@
+//! LaTeX that reads back as the same tree.
+
 use crate::{latex, parse};
 
 fn printed(text: &str) -> String {

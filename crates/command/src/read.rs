@@ -91,7 +91,8 @@ fn describe(title: &str, report: &InstanceReport, out: &mut dyn Write) -> Result
     }
     let errors = report.complaints.iter().filter(|complaint| complaint.error).count();
     if !report.usable {
-        writeln!(out, "  cannot be used: {errors} errors, listed with their places")?;
+        let errors = if errors == 1 { "one error".to_owned() } else { format!("{errors} errors") };
+        writeln!(out, "  cannot be used: {errors}, listed with the place")?;
     }
     Ok(())
 }

@@ -236,7 +236,8 @@ impl Drive {
                 Reply::Ready { .. }
                 | Reply::InstanceRead(_)
                 | Reply::Catalogue(_)
-                | Reply::Node(_) => {}
+                | Reply::Node(_)
+                | Reply::Checked(_) => {}
             }
         }
     }

@@ -5,6 +5,7 @@ use std::collections::VecDeque;
 use record::message::{Envelope, Reply, Request, RunNumber};
 use record::wire::{read_request, write_envelope};
 
+use crate::check::check;
 use crate::fault::fault;
 use crate::lane::Lane;
 use crate::map::catalogue_entries;
@@ -83,6 +84,10 @@ impl Worker {
                     Err(error) => Reply::Failed(error),
                 };
                 self.reply(reply);
+            }
+            Request::Check(job) => {
+                let report = check(&job, &mut self.readings);
+                self.reply(Reply::Checked(Box::new(report)));
             }
             Request::List => self.reply(Reply::Catalogue(catalogue_entries())),
             Request::Load(job) => {

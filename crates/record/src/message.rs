@@ -20,6 +20,8 @@ pub enum Request {
     Read(InstanceText),
     /// List the catalogue. Answered by [`Reply::Catalogue`].
     List,
+    /// Check a formulation while it is typed. Answered by [`Reply::Checked`].
+    Check(Box<CheckJob>),
     /// Load a rival and solve its root. Answered by [`Reply::Understood`] and [`Reply::Root`].
     Load(Box<LaneJob>),
     /// Search on: to the end, or for a number of nodes. Answered by [`Reply::Batch`]es.
@@ -54,6 +56,17 @@ pub struct LaneJob {
     pub seed: u64,
 }
 
+/// A formulation to check.
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
+pub struct CheckJob {
+    /// The number that the reply carries, by which the page knows late ones.
+    pub number: u32,
+    /// Journal notation.
+    pub text: String,
+    /// The instance it is meant for, if there is one.
+    pub instance: Option<InstanceText>,
+}
+
 /// Worker to page: the run it belongs to and its place in the stream.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
 pub struct Envelope {
@@ -77,6 +90,8 @@ pub enum Reply {
     InstanceRead(Box<InstanceReport>),
     /// The shipped formulations.
     Catalogue(Vec<CatalogueEntry>),
+    /// What is to be said of a formulation as it is typed.
+    Checked(Box<CheckReport>),
     /// A rival was parsed, checked and expanded.
     Understood(Box<RivalReport>),
     /// Long work on one thing goes on.
@@ -200,6 +215,66 @@ pub struct Complaint {
     pub message: String,
     /// How to mend it; may be empty.
     pub mend: String,
+}
+
+/// What is to be said of a formulation as it is typed.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct CheckReport {
+    /// The number of the job.
+    pub number: u32,
+    /// What is wrong, warned of and assumed, by place.
+    pub remarks: Vec<Remark>,
+    /// The title that the text gives itself; may be empty.
+    pub title: String,
+    /// The names of its data and definitions, in order.
+    pub data: Vec<String>,
+    /// The names of its variables, in order.
+    pub variables: Vec<String>,
+    /// The names of its constraint families, in order.
+    pub families: Vec<String>,
+    /// How large it is on the instance, where that is quickly known.
+    pub size: Option<CheckedSize>,
+}
+
+impl CheckReport {
+    /// Whether nothing known stands in the way of a model.
+    #[must_use]
+    pub fn is_sound(&self) -> bool {
+        !self.remarks.iter().any(|remark| remark.complaint.error)
+    }
+}
+
+/// A complaint with the changes that would mend it.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Remark {
+    /// The complaint.
+    pub complaint: Complaint,
+    /// Changes of the text, the likeliest first.
+    pub mends: Vec<TextEdit>,
+}
+
+/// A change of a text.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct TextEdit {
+    /// What it does, as on a button.
+    pub label: String,
+    /// First UTF-16 unit to replace.
+    pub start: u32,
+    /// One past the last.
+    pub end: u32,
+    /// What to put there.
+    pub text: String,
+}
+
+/// The size of a formulation on an instance, with families over subsets left to separation.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+pub struct CheckedSize {
+    /// Rows.
+    pub rows: u32,
+    /// Columns.
+    pub columns: u32,
+    /// Entries.
+    pub nonzeros: u64,
 }
 
 /// What a rival is once it is expanded.

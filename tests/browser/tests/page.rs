@@ -24,5 +24,8 @@ mod workers;
 #[path = "page/answering.rs"]
 mod answering;
 
+#[path = "page/editing.rs"]
+mod editing;
+
 #[path = "page/looks.rs"]
 mod looks;

@@ -1,5 +1,6 @@
 //! The thin layer over the browser: workers, frames, sizes, colours, the lanes' runs.
 
+pub(crate) mod checks;
 pub(crate) mod frame;
 pub(crate) mod run;
 pub(crate) mod session;

@@ -123,9 +123,11 @@ impl LaneRun {
                 Some(LaneAction::Failed(error))
             }
             Reply::Acted(acted) => acted.refused.map(LaneAction::Notice),
-            Reply::Node(_) | Reply::Ready { .. } | Reply::InstanceRead(_) | Reply::Catalogue(_) => {
-                None
-            }
+            Reply::Checked(_)
+            | Reply::Node(_)
+            | Reply::Ready { .. }
+            | Reply::InstanceRead(_)
+            | Reply::Catalogue(_) => None,
         }
     }
 

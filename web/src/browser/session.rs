@@ -9,11 +9,14 @@ use std::rc::{Rc, Weak};
 
 use gloo_timers::callback::Timeout;
 use record::event::NodeNumber;
-use record::message::{Complaint, Envelope, InstanceReport, LaneJob, Reply, Request};
+use record::message::{
+    CheckJob, CheckReport, Complaint, Envelope, InstanceReport, LaneJob, Reply, Request,
+};
 use record::results::ErrorReport;
 use record::scenario::InstanceText;
 use yew::{Callback, UseReducerDispatcher};
 
+use crate::browser::checks::{Checks, unchecked};
 use crate::browser::frame::Frame;
 use crate::browser::run::{LaneRun, TreeCell};
 use crate::browser::worker::{FromWorker, WorkerHandle};
@@ -43,6 +46,7 @@ struct Inner {
     author: Option<WorkerHandle>,
     reading: Option<Shared<InstanceText>>,
     wanted: Option<Shared<InstanceText>>,
+    checks: Checks,
     frame: Option<Frame>,
 }
 
@@ -59,6 +63,7 @@ impl Session {
             author: None,
             reading: None,
             wanted: None,
+            checks: Checks::default(),
             frame: None,
         })));
         session.start_author();
@@ -72,6 +77,17 @@ impl Session {
             inner.wanted = Some(text);
         } else {
             inner.send_reading(text);
+        }
+    }
+
+    /// Checks a formulation as it is typed; of several asked for in a row in one lane, only the
+    /// last is answered.
+    pub(crate) fn check(&self, id: LaneId, job: CheckJob, hear: Callback<CheckReport>) {
+        let mut inner = self.0.borrow_mut();
+        let job = inner.checks.begin(id, job, hear);
+        if let Some(author) = &inner.author {
+            // A worker that takes no message tells so by its error event.
+            let _ = author.post(&Request::Check(Box::new(job)));
         }
     }
 
@@ -307,12 +323,22 @@ impl Session {
                 let document = self.0.borrow().document.clone();
                 document.dispatch(DocumentAction::Catalogue(entries));
             }
+            FromWorker::Reply(Envelope { reply: Reply::Checked(report), .. }) => {
+                let heard = self.0.borrow_mut().checks.end(report.number);
+                if let Some(hear) = heard {
+                    hear.emit(*report);
+                }
+            }
             FromWorker::Reply(Envelope { reply: Reply::Failed(error), .. }) => {
                 self.finish_reading(unreadable(error.message));
             }
             FromWorker::Reply(_) => {}
             FromWorker::Failure(why) => {
                 self.start_author();
+                let waiting = self.0.borrow_mut().checks.end_all();
+                for hear in waiting {
+                    hear.emit(unchecked(&why));
+                }
                 self.finish_reading(unreadable(format!("the reader failed: {why}")));
             }
         }

@@ -2,6 +2,7 @@
 
 use std::rc::Rc;
 
+use crate::state::editor::Edit;
 use crate::state::history::History;
 use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
@@ -30,6 +31,8 @@ pub(crate) struct Slot {
     pub(crate) id: LaneId,
     /// The rival.
     pub(crate) rival: Shared<Rival>,
+    /// What it was as shipped, once it was edited.
+    pub(crate) shipped: Option<Shared<Rival>>,
 }
 
 /// An instance that was read and can be used.
@@ -98,6 +101,8 @@ pub(crate) enum DocumentAction {
     Remove(LaneId),
     /// A family of a rival gets a state.
     Family(LaneId, String, FamilyState),
+    /// A rival is written or copied.
+    Edit(Edit),
 }
 
 impl Document {
@@ -174,8 +179,9 @@ impl Document {
             || rival.families.values().any(|&state| state == FamilyState::Out)
     }
 
-    fn push(&mut self, rival: Rival) {
-        self.slots.push(Slot { id: LaneId(self.next), rival: Shared::new(rival) });
+    /// A rival joins.
+    pub(crate) fn push(&mut self, rival: Rival) {
+        self.slots.push(Slot { id: LaneId(self.next), rival: Shared::new(rival), shipped: None });
         self.next += 1;
     }
 
@@ -268,6 +274,7 @@ impl Document {
             }
             DocumentAction::Remove(id) => document.slots.retain(|slot| slot.id != id),
             DocumentAction::Family(id, family, state) => document.set_family(id, family, state),
+            DocumentAction::Edit(edit) => document.edit(edit),
         }
         document.into()
     }

@@ -83,6 +83,7 @@ fn change(document: &Document, action: &DocumentAction) -> Option<Change> {
         DocumentAction::Remove(_) => done("rival that left"),
         DocumentAction::Family(..) => done("state of a family"),
         DocumentAction::Open(_) => done("scenario that was opened"),
+        DocumentAction::Edit(edit) => done(edit.words()),
         DocumentAction::Read(..)
         | DocumentAction::Catalogue(_)
         | DocumentAction::Undo

@@ -2,7 +2,10 @@
 //! touches a document, so that all of it is tested natively.
 
 pub(crate) mod board;
+pub(crate) mod commands;
 pub(crate) mod document;
+pub(crate) mod editor;
+pub(crate) mod highlight;
 pub(crate) mod history;
 pub(crate) mod lane;
 pub(crate) mod outline;

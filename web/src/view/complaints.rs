@@ -50,7 +50,7 @@ pub(crate) fn Complaints(props: &ComplaintsProps) -> Html {
 }
 
 /// The kind of a complaint in a word.
-fn kind(complaint: &Complaint) -> &'static str {
+pub(crate) fn kind(complaint: &Complaint) -> &'static str {
     if complaint.error {
         "Error"
     } else if complaint.is_note() {

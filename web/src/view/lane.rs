@@ -11,10 +11,12 @@ use yew::prelude::*;
 
 use crate::state::board::{BoardAction, Selection};
 use crate::state::document::{DocumentAction, Slot};
+use crate::state::editor::Draft;
 use crate::state::lane::{Lane, Phase};
 use crate::state::pointer::Shared;
 use crate::state::words::{advice, sentence, status};
 use crate::view::canvas::TreeCanvas;
+use crate::view::editor::{Editor, toggle};
 use crate::view::families::Families;
 use crate::view::figure::{figure, gap, share};
 use crate::view::hands::{Hands, use_hands};
@@ -35,6 +37,7 @@ pub(crate) struct LaneProps {
     /// Who published it, where that is known.
     pub(crate) source: String,
     pub(crate) relaxation: bool,
+    pub(crate) draft: Option<Draft>,
     pub(crate) lane: Shared<Lane>,
     pub(crate) text: Option<Shared<InstanceText>>,
     pub(crate) run: Shared<Run>,
@@ -50,6 +53,7 @@ pub(crate) struct LaneProps {
 pub(crate) fn LaneView(props: &LaneProps) -> Html {
     let hands = use_hands();
     use_loading(props, hands.clone());
+    let writing = use_state_eq(|| props.slot.is_scaffold());
     html! {
         <section
             class={classes!("lane", format!("hue-{}", props.hue))} data-testid="lane"
@@ -72,10 +76,17 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 }
                 if let Some(error) = &props.lane.error { { failure(error) } }
                 if let Some(hands) = &hands { { buttons(props, hands) } }
+                if props.draft.is_some() { { toggle(props.slot.id, &props.letter, &writing) } }
             </div>
             <div class="lane-drawing">
                 if let Some(hands) = &hands { { drawing(props, hands) } }
             </div>
+            if let Some(draft) = props.draft.clone() {
+                <Editor
+                    slot={props.slot.clone()} letter={props.letter.clone()} {draft}
+                    instance={props.text.clone()} open={*writing}
+                />
+            }
         </section>
     }
 }

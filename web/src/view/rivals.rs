@@ -9,6 +9,7 @@ use yew::prelude::*;
 use crate::browser::size::use_width;
 use crate::state::board::Board;
 use crate::state::document::{Document, DocumentAction};
+use crate::state::editor::{Draft, Edit};
 use crate::state::lane::Phase;
 use crate::state::pointer::Shared;
 use crate::view::axis::{AxisView, Best};
@@ -56,6 +57,7 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
                     key={slot.id.0} slot={slot.clone()} letter={Document::letter(place)}
                     hue={place % HUES} title={document.rival_title(&slot.rival)}
                     source={document.rival_source(&slot.rival)} relaxation={document.is_relaxation(&slot.rival)}
+                    draft={Draft::of(&slot.rival, &document.catalogue)}
                     lane={board.lane(slot.id)} run={document.run.clone()} seed={document.seed}
                     text={document.accepted.as_ref().map(|accepted| accepted.text.clone())}
                     {axis} {width} best={best.as_ref().map(|best| best.value)}
@@ -207,6 +209,14 @@ fn AddRival(props: &AddProps) -> Html {
     if props.catalogue.is_empty() {
         return Html::default();
     }
+    let write = {
+        let hands = hands.clone();
+        Callback::from(move |_: MouseEvent| {
+            if let Some(hands) = &hands {
+                hands.document.dispatch(DocumentAction::Edit(Edit::Write));
+            }
+        })
+    };
     let add = {
         let select = select.clone();
         Callback::from(move |_: MouseEvent| {
@@ -229,6 +239,7 @@ fn AddRival(props: &AddProps) -> Html {
                 </select>
             </label>
             <button type="button" data-testid="add" onclick={add}>{ "Add" }</button>
+            <button type="button" data-testid="write" onclick={write}>{ "Write my own" }</button>
         </div>
     }
 }

@@ -46,6 +46,31 @@ impl Checked {
         let data = self.plan.symbols.iter().filter(|s| s.datum);
         data.map(|s| s.name.as_str()).collect()
     }
+
+    /// The names of its definitions, in order.
+    #[must_use]
+    pub fn definitions(&self) -> Vec<&str> {
+        let defined = self.plan.symbols.iter().filter(|s| !s.datum);
+        defined.map(|s| s.name.as_str()).collect()
+    }
+
+    /// The names of its variables, in order.
+    #[must_use]
+    pub fn variables(&self) -> Vec<&str> {
+        self.plan.variables.iter().map(|variable| variable.name.as_str()).collect()
+    }
+
+    /// The names of its constraint families, in order.
+    #[must_use]
+    pub fn families(&self) -> Vec<&str> {
+        self.plan.families.iter().map(|family| family.name.as_str()).collect()
+    }
+
+    /// Its title; empty when it has none.
+    #[must_use]
+    pub fn title(&self) -> &str {
+        &self.plan.title
+    }
 }
 
 /// Checks a tree. `O(tree · log names)`.

@@ -1,0 +1,254 @@
+//! A rival opened to its notation: typed text is checked beside the page's own work, and the lane
+//! runs it only when that is asked for. A text that is wrong touches nothing.
+
+use gloo_timers::callback::Timeout;
+use record::message::{CheckJob, CheckReport};
+use record::scenario::InstanceText;
+use report::number::of;
+use web_sys::HtmlInputElement;
+use yew::prelude::*;
+
+use crate::state::document::{DocumentAction, Slot};
+use crate::state::editor::{Draft, Edit};
+use crate::state::highlight::pieces;
+use crate::state::lane::LaneId;
+use crate::state::pointer::Shared;
+use crate::view::editor_box::ScriptBox;
+use crate::view::editor_remarks::Remarks;
+use crate::view::hands::{Hands, use_hands};
+
+/// Rest after typing before the text is checked, in milliseconds.
+const REST: u32 = 150;
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct EditorProps {
+    pub(crate) slot: Slot,
+    pub(crate) letter: String,
+    /// What the lane runs.
+    pub(crate) draft: Draft,
+    pub(crate) instance: Option<Shared<InstanceText>>,
+    pub(crate) open: bool,
+}
+
+/// A text with what was said of it.
+#[derive(Debug, Clone, PartialEq)]
+struct Checked {
+    text: String,
+    report: Shared<CheckReport>,
+}
+
+/// The button that opens the editor, and closes it with the text kept.
+pub(crate) fn toggle(id: LaneId, letter: &str, open: &UseStateHandle<bool>) -> Html {
+    let shown = **open;
+    let open = open.setter();
+    let onclick = Callback::from(move |_: MouseEvent| open.set(!shown));
+    html! {
+        <button
+            type="button" data-testid="notation" aria-expanded={if shown { "true" } else { "false" }}
+            aria-controls={panel(id)} aria-label={format!("Notation of {letter}")} {onclick}
+        >{ "Notation" }</button>
+    }
+}
+
+fn panel(id: LaneId) -> String {
+    format!("notation-{}", id.0)
+}
+
+/// The editor. While it is closed it keeps what was typed.
+#[component]
+pub(crate) fn Editor(props: &EditorProps) -> Html {
+    let hands = use_hands();
+    let draft = use_state_eq(|| props.draft.clone());
+    let checked = use_state_eq(|| None::<Checked>);
+    let area = use_node_ref();
+    let setter = draft.setter();
+    use_effect_with(props.draft.clone(), move |running| setter.set(running.clone()));
+    let hear = checked.setter();
+    use_checking(props, draft.text.clone(), Callback::from(move |found| hear.set(Some(found))));
+    let (now, checked) = ((*draft).clone(), (*checked).clone());
+    let coloured = use_memo((now.text.clone(), checked.clone()), |(text, checked)| {
+        let old = checked.as_ref().map_or("", |checked| checked.text.as_str());
+        Shared::new(pieces(text, old, checked.as_ref().map(|checked| &*checked.report)))
+    });
+    let setter = draft.setter();
+    let change = Callback::from(move |draft: Draft| setter.set(draft));
+    if !props.open {
+        return html! { <div id={panel(props.slot.id)} hidden=true /> };
+    }
+    let state = State { running: props.draft.clone(), draft: now, checked };
+    let (id, fresh) = (props.slot.id, state.is_fresh());
+    let enter = run_it(props.slot.id, &state, hands.as_ref());
+    let typed = {
+        let (change, draft) = (change.clone(), state.draft.clone());
+        change.reform(move |text| Draft { text, ..draft.clone() })
+    };
+    let remarks = state.checked.as_ref().map_or_else(Vec::new, |c| c.report.remarks.clone());
+    let (told, listed) = (format!("{}-state", panel(id)), format!("{}-remarks", panel(id)));
+    html! {
+        <div class="editor" id={panel(id)} role="group" aria-label={format!("Notation of {}", props.letter)} data-testid="editor">
+            <div>
+                { heading(&state.draft, &change) }
+                <ScriptBox
+                    id={format!("{}-text", panel(id))} label={format!("Notation of {}", props.letter)}
+                    text={state.draft.text.clone()} pieces={(*coloured).clone()}
+                    invalid={state.is_wrong()} described_by={format!("{told} {listed}")}
+                    area={area.clone()} typed={typed.clone()} enter={enter.clone()}
+                />
+                { buttons(props, &state, &enter, hands.as_ref()) }
+            </div>
+            <div class="small">
+                <p id={told} role="status" data-testid="notation-state">{ state.words() }</p>
+                { families(&state) }
+                <Remarks id={listed} remarks={Shared::new(remarks)} {fresh} {area} {typed} />
+            </div>
+        </div>
+    }
+}
+
+/// Checks the text once typing rests.
+#[hook]
+fn use_checking(props: &EditorProps, text: String, heard: Callback<Checked>) {
+    let hands = use_hands();
+    let id = props.slot.id;
+    let open = props.open;
+    use_effect_with((open, text, props.instance.clone()), move |(open, text, instance)| {
+        let timer = open.then(|| {
+            let (text, instance) = (text.clone(), instance.as_deref().cloned());
+            Timeout::new(REST, move || {
+                let Some(hands) = hands else { return };
+                let job = CheckJob { text: text.clone(), instance, ..CheckJob::default() };
+                let hear = move |report| {
+                    heard.emit(Checked { text: text.clone(), report: Shared::new(report) });
+                };
+                hands.session.check(id, job, Callback::from(hear));
+            })
+        });
+        move || drop(timer)
+    });
+}
+
+/// What is typed, beside what runs.
+struct State {
+    running: Draft,
+    draft: Draft,
+    checked: Option<Checked>,
+}
+
+impl State {
+    /// Whether the text as it is now was checked.
+    fn is_fresh(&self) -> bool {
+        self.checked.as_ref().is_some_and(|checked| checked.text == self.draft.text)
+    }
+
+    fn is_wrong(&self) -> bool {
+        self.checked.as_ref().is_some_and(|checked| !checked.report.is_sound())
+    }
+
+    fn can_be_used(&self) -> bool {
+        self.is_fresh() && !self.is_wrong() && self.draft != self.running
+    }
+
+    fn words(&self) -> String {
+        let Some(checked) = &self.checked else { return "Checking.".to_owned() };
+        if !self.is_fresh() {
+            return "Changed, being checked.".to_owned();
+        }
+        let errors = checked.report.remarks.iter().filter(|one| one.complaint.error).count();
+        if errors > 0 {
+            let errors = of(errors as u64, "error");
+            return format!("{errors}. The lane keeps what it runs.");
+        }
+        let size = checked.report.size.map_or_else(String::new, |size| {
+            let (rows, columns) = (u64::from(size.rows), u64::from(size.columns));
+            format!(": {}, {} on this instance", of(rows, "row"), of(columns, "column"))
+        });
+        let used = if self.draft == self.running {
+            "This is what the lane runs."
+        } else {
+            "Changed, not used yet."
+        };
+        format!("No errors{size}. {used}")
+    }
+}
+
+/// Title and role.
+fn heading(draft: &Draft, change: &Callback<Draft>) -> Html {
+    let title = {
+        let draft = draft.clone();
+        change.reform(move |event: InputEvent| {
+            let input: HtmlInputElement = event.target_unchecked_into();
+            Draft { title: input.value(), ..draft.clone() }
+        })
+    };
+    let role = {
+        let draft = draft.clone();
+        change.reform(move |_: Event| Draft { relaxation: !draft.relaxation, ..draft.clone() })
+    };
+    html! {
+        <>
+            <label class="field wide">
+                { "Title" }
+                <input
+                    type="text" maxlength="120" data-testid="notation-title"
+                    value={draft.title.clone()} oninput={title}
+                />
+            </label>
+            <label class="row small">
+                <input type="checkbox" checked={draft.relaxation} onchange={role} data-testid="notation-role" />
+                { "A relaxation: bounded, not compared for its optimum" }
+            </label>
+        </>
+    }
+}
+
+fn families(state: &State) -> Html {
+    let Some(checked) = &state.checked else { return Html::default() };
+    let names = checked.report.families.join(", ");
+    if names.is_empty() {
+        return Html::default();
+    }
+    html! { <p class="soft" data-testid="notation-families">{ format!("Families: {names}.") }</p> }
+}
+
+/// Makes the lane run the draft.
+fn run_it(id: LaneId, state: &State, hands: Option<&Hands>) -> Callback<()> {
+    let (Some(hands), Some(checked), true) = (hands, &state.checked, state.can_be_used()) else {
+        return Callback::noop();
+    };
+    let (hands, draft, report) = (hands.clone(), state.draft.clone(), checked.report.clone());
+    Callback::from(move |()| {
+        let edit = Edit::Use(id, draft.clone(), report.clone());
+        hands.document.dispatch(DocumentAction::Edit(edit));
+    })
+}
+
+fn buttons(
+    props: &EditorProps,
+    state: &State,
+    enter: &Callback<()>,
+    hands: Option<&Hands>,
+) -> Html {
+    let id = props.slot.id;
+    let act = |edit: fn(LaneId) -> Edit| {
+        let hands = hands.cloned();
+        Callback::from(move |_: MouseEvent| {
+            if let Some(hands) = &hands {
+                hands.document.dispatch(DocumentAction::Edit(edit(id)));
+            }
+        })
+    };
+    let able = state.can_be_used();
+    let run = enter.reform(|_: MouseEvent| ());
+    html! {
+        <div class="row">
+            <button
+                type="button" data-testid="use" aria-disabled={if able { "false" } else { "true" }}
+                title="Control and Enter" onclick={run}
+            >{ "Use this text" }</button>
+            if props.slot.shipped.is_some() {
+                <button type="button" data-testid="restore" onclick={act(Edit::Restore)}>{ "Back to the shipped text" }</button>
+            }
+            <button type="button" data-testid="duplicate" onclick={act(Edit::Duplicate)}>{ "Duplicate this rival" }</button>
+        </div>
+    }
+}

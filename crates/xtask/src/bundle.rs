@@ -18,9 +18,9 @@ use crate::pack::pack;
 use crate::process::{run, step};
 use crate::workplace::Workplace;
 
-/// What the whole page may weigh as a server would send it, in bytes of gzip: links, files and undo
-/// brought it past the 600 KB it was first held to.
-const BUDGET: usize = 640 * 1024;
+/// What the whole page may weigh as a server would send it, in bytes of gzip. The aim is 600 KB;
+/// links, files and undo brought it to 639, the editor of notation to 655.
+const BUDGET: usize = 670 * 1024;
 
 const PAGE: &str = "hullward-web";
 const ENGINE: &str = "hullward-worker";

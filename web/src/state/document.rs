@@ -2,6 +2,7 @@
 
 use std::rc::Rc;
 
+use crate::demo::demo;
 use crate::state::editor::Edit;
 use crate::state::history::History;
 use crate::state::lane::LaneId;
@@ -197,7 +198,13 @@ impl Document {
         if !report.usable {
             return;
         }
-        let another = self.accepted.as_ref().is_some_and(|accepted| accepted.text != text);
+        let before = self.accepted.as_ref().map(|accepted| accepted.text.clone());
+        let another = before.as_ref().is_some_and(|before| *before != text);
+        if before.is_some_and(|before| is_another(&before.text, &text.text))
+            && *self.notes == demo().notes
+        {
+            self.notes = Shared::new(String::new());
+        }
         if another && !self.titled {
             self.title =
                 if report.title.is_empty() { UNTITLED.to_owned() } else { report.title.clone() };
@@ -335,6 +342,21 @@ mod tests {
         assert_eq!(changed.draft.reader.as_deref(), Some("matrix"));
         let another = changed.reduce(DocumentAction::Text("A 3 4\nB 1 2".to_owned()));
         assert_eq!(another.draft.reader, None);
+    }
+
+    /// The demo's notes say that all data are invented: under a table of one's own they lied.
+    #[test]
+    fn the_notes_of_the_demo_do_not_stay_under_other_data() {
+        let demo = read(Rc::new(Document::open(demo())), usable(""));
+        let edited = demo.draft.text.replacen("19", "18", 1);
+        let edited = read(demo.reduce(DocumentAction::Text(edited)), usable(""));
+        assert!(edited.notes.contains("invented"));
+        let other = "A 3 4\nB 1 2\nC 5 6".to_owned();
+        let other = read(edited.reduce(DocumentAction::Text(other)), usable(""));
+        assert_eq!(*other.notes, "");
+        let own = other.reduce(DocumentAction::Notes("ours".to_owned()));
+        let third = read(own.reduce(DocumentAction::Text("9 9 9 9".to_owned())), usable(""));
+        assert_eq!(*third.notes, "ours");
     }
 
     #[test]

@@ -2,7 +2,7 @@
 //! tableau.
 
 use crate::basis::Status;
-use crate::sparse::{SparseVector, largest};
+use crate::sparse::largest;
 use crate::state::{Core, excess, for_column};
 use crate::tolerances;
 
@@ -19,6 +19,8 @@ impl Core {
             }
         }
         self.ticks += self.factor.ftran(&mut side);
+        self.violated.clear();
+        self.is_listed.fill(false);
         for position in 0..self.rows() {
             self.basic[position] = side.get(position as u32);
             self.note_violation(position);
@@ -33,6 +35,10 @@ impl Core {
         let excess =
             excess(self.basic[position], self.work_lower[j], self.work_upper[j], self.room.primal);
         self.violation[position] = excess * excess;
+        if excess != 0.0 && !self.is_listed[position] {
+            self.is_listed[position] = true;
+            self.violated.push(position as u32);
+        }
     }
 
     /// y = B⁻ᵀc_B into `scratch.rho`.
@@ -79,7 +85,7 @@ impl Core {
 
     /// True when no basic variable is out of its working bounds.
     pub(crate) fn is_primal_feasible(&self) -> bool {
-        self.violation.iter().all(|&violation| violation == 0.0)
+        self.violated.iter().all(|&position| self.violation[position as usize] == 0.0)
     }
 
     /// Largest wrong-signed reduced cost.
@@ -93,24 +99,34 @@ impl Core {
         rho.clear();
         rho.set(position, 1.0);
         self.ticks += self.factor.btran(&mut rho);
-        self.price(&rho);
         self.scratch.rho = rho;
+        self.price();
     }
 
-    /// ρ[A, −I] into `scratch.row`, row by row of A.
-    fn price(&mut self, rho: &SparseVector) {
-        let n = self.columns() as u32;
+    /// ρ[A, −I] into `scratch.row`, row by row of A, without basic and fixed variables.
+    fn price(&mut self) {
+        if !self.partition.is_current {
+            let (status, lower, upper) = (&self.status, &self.work_lower, &self.work_upper);
+            let priced = |j: usize| status[j] != Status::Basic && lower[j] != upper[j];
+            self.partition.rebuild(&self.matrix, priced);
+            self.ticks += self.matrix.nonzeros() as u64;
+        }
+        let n = self.columns();
         let row = &mut self.scratch.row;
         row.clear();
-        for (i, multiplier) in rho.iter() {
-            if multiplier != 0.0 {
-                row.add(n + i, -multiplier);
-                for (j, value) in self.matrix.row(i as usize) {
-                    row.add(j, multiplier * value);
-                }
+        for (i, multiplier) in self.scratch.rho.iter() {
+            let logical = n + i as usize;
+            if self.status[logical] != Status::Basic
+                && self.work_lower[logical] != self.work_upper[logical]
+            {
+                row.add(logical as u32, -multiplier);
+            }
+            let (columns, values) = self.partition.row(i);
+            self.ticks += columns.len() as u64 + 1;
+            for (&j, &value) in columns.iter().zip(values) {
+                row.add(j, multiplier * value);
             }
         }
-        self.ticks += row.count() as u64;
     }
 
     /// B⁻¹a_j into `scratch.column`.
@@ -118,7 +134,7 @@ impl Core {
         let mut column = std::mem::take(&mut self.scratch.column);
         column.clear();
         for_column(&self.matrix, j, |row, value| column.set(row, value));
-        self.ticks += self.factor.ftran(&mut column);
+        self.ticks += self.factor.ftran_entering(&mut column);
         self.scratch.column = column;
     }
 

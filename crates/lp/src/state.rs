@@ -6,9 +6,10 @@
 //! *working* costs and bounds (perturbation, shifts); the given ones stay.
 
 use crate::basis::Status;
+use crate::dual::Breakpoint;
 use crate::lu::{BasisColumns, Factor};
 use crate::problem::Problem;
-use crate::sparse::{Matrix, SparseVector};
+use crate::sparse::{Matrix, Partition, SparseVector};
 use crate::tolerances::{self, MARKOWITZ, PRIMAL_RELATIVE};
 
 /// Vectors kept between iterations so that nothing is allocated in them.
@@ -16,7 +17,7 @@ use crate::tolerances::{self, MARKOWITZ, PRIMAL_RELATIVE};
 pub(crate) struct Scratch {
     /// A row of B⁻¹.
     pub(crate) rho: SparseVector,
-    /// That row times [A, −I], by variable.
+    /// That row times [A, −I], by variable; those that are basic or fixed are left out.
     pub(crate) row: SparseVector,
     /// B⁻¹ times the entering column, by position.
     pub(crate) column: SparseVector,
@@ -24,6 +25,10 @@ pub(crate) struct Scratch {
     pub(crate) tau: SparseVector,
     /// B⁻¹ times the columns of flipped variables, by position.
     pub(crate) flips: SparseVector,
+    /// The variables that bound the dual step.
+    pub(crate) points: Vec<Breakpoint>,
+    /// The variables that flip before the next pivot.
+    pub(crate) flipped: Vec<u32>,
 }
 
 /// How much violation counts as none in the current attempt.
@@ -45,6 +50,8 @@ impl Default for Room {
 #[derive(Clone, Debug)]
 pub(crate) struct Core {
     pub(crate) matrix: Matrix,
+    /// The rows as pricing sees them.
+    pub(crate) partition: Partition,
     /// The caller's value of a variable for a scaled value of 1.
     pub(crate) unit: Vec<f64>,
     pub(crate) is_scaled: bool,
@@ -65,6 +72,10 @@ pub(crate) struct Core {
     pub(crate) weight: Vec<f64>,
     /// Squared violation of working bounds by position.
     pub(crate) violation: Vec<f64>,
+    /// Positions that may have a violation, each once.
+    pub(crate) violated: Vec<u32>,
+    /// Whether a position is among them.
+    pub(crate) is_listed: Vec<bool>,
     /// Reference weight by variable (primal).
     pub(crate) devex: Vec<f64>,
     pub(crate) factor: Factor,
@@ -90,6 +101,7 @@ impl Core {
         upper.extend(problem.rows.iter().map(|row| row.upper));
         let mut core = Self {
             matrix,
+            partition: Partition::default(),
             unit: Vec::new(),
             is_scaled: false,
             work_cost: cost.clone(),
@@ -104,6 +116,8 @@ impl Core {
             reduced: Vec::new(),
             weight: Vec::new(),
             violation: Vec::new(),
+            violated: Vec::new(),
+            is_listed: Vec::new(),
             devex: Vec::new(),
             factor: Factor::default(),
             canonical: false,
@@ -153,6 +167,7 @@ impl Core {
         self.work_cost.clone_from(&self.cost);
         self.work_lower.clone_from(&self.lower);
         self.work_upper.clone_from(&self.upper);
+        self.partition.is_current = false;
     }
 
     /// Moves every nonbasic status to a bound that exists (working bounds); fixed variables count
@@ -180,6 +195,9 @@ impl Core {
         self.weight.extend(self.head.iter().map(|&j| weight[j as usize]));
         self.basic.resize(m, 0.0);
         self.violation.resize(m, 0.0);
+        self.violated.clear();
+        self.is_listed.clear();
+        self.is_listed.resize(m, false);
         self.reduced.resize(variables, 0.0);
         self.devex.resize(variables, 1.0);
         self.scratch.rho.reset(m);
@@ -188,6 +206,7 @@ impl Core {
         self.scratch.tau.reset(m);
         self.scratch.flips.reset(m);
         self.canonical = false;
+        self.partition.is_current = false;
     }
 
     /// Factorises the basis in the order of the head, with the threshold of the attempt. Dependent
@@ -216,6 +235,7 @@ impl Core {
             self.status[logical] = Status::Basic;
             self.head[r.position as usize] = logical as u32;
             self.weight[r.position as usize] = 1.0;
+            self.partition.is_current = false;
         }
         replaced.len() as u32
     }
@@ -268,11 +288,22 @@ impl Core {
             settled(leaving_status, self.work_lower[leaving], self.work_upper[leaving]);
         self.status[entering as usize] = Status::Basic;
         self.head[at] = entering;
+        self.repartition(leaving, entering);
         self.basic[at] = value;
         self.note_violation(at);
-        self.factor.update(position, &self.scratch.column);
+        self.factor.update(position, self.scratch.column.get(position));
         self.canonical = false;
         self.iterations += 1;
+    }
+
+    /// Keeps the rows as pricing sees them.
+    fn repartition(&mut self, leaving: usize, entering: u32) {
+        if (entering as usize) < self.columns() {
+            self.partition.take_out(&self.matrix, entering);
+        }
+        if leaving < self.columns() && !self.is_fixed(leaving) {
+            self.partition.put_in(&self.matrix, leaving as u32);
+        }
     }
 
     /// Basic values after a step along `scratch.column`: x_B ← x_B − step · α.

@@ -81,12 +81,15 @@ pub(crate) const PERTURB_COST: f64 = 5e-7;
 /// Size of a bound perturbation, relative to 1 + |bound|.
 pub(crate) const PERTURB_BOUND: f64 = 1e-7;
 
-/// Updates before the factors are made afresh.
-pub(crate) const UPDATES: usize = 64;
+/// Most updates before the factors are made afresh.
+pub(crate) const UPDATES: usize = 100;
 
-/// Share of nonzeros up to which a triangular solve looks for its reach first (Gilbert, Peierls
-/// 1988).
-pub(crate) const HYPERSPARSE: f64 = 0.05;
+/// Difference allowed between the new diagonal of an update and the one that follows from the
+/// pivot; relative. Beyond it the factors are made afresh.
+pub(crate) const UPDATE_AGREEMENT: f64 = 1e-7;
+
+/// Share of nonzeros from which a triangular solve walks every slot.
+pub(crate) const HYPERSPARSE: f64 = 0.1;
 
 /// Row violation of a released point; relative to 1 + the largest |a x| of the row.
 pub(crate) const VERIFY_ROW: f64 = 2e-9;

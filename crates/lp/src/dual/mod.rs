@@ -14,6 +14,7 @@ mod weights;
 use crate::basis::Status;
 use crate::state::{Core, for_column};
 use crate::tolerances::{STALL, WEIGHT_RATIO};
+pub(crate) use ratio::Breakpoint;
 use ratio::Choice;
 
 /// How one step of the method went.
@@ -78,24 +79,19 @@ pub(crate) fn step(core: &mut Core, state: &mut DualState) -> DualStep {
     let sign = core.violation_sign(position);
     match ratio::choose(core, position, sign) {
         Choice::None => DualStep::Ray { position, sign },
-        Choice::Enter { entering, flips } => pivot(core, state, (position, entering), &flips),
+        Choice::Enter { entering } => pivot(core, state, (position, entering)),
     }
 }
 
 /// Makes the pivot chosen, flips first.
-fn pivot(
-    core: &mut Core,
-    state: &mut DualState,
-    (position, entering): (u32, u32),
-    flips: &[u32],
-) -> DualStep {
+fn pivot(core: &mut Core, state: &mut DualState, (position, entering): (u32, u32)) -> DualStep {
     core.compute_column(entering);
     if !core.pivot_is_sound(position, entering) {
         return DualStep::Unsound { position };
     }
     let sign = core.violation_sign(position);
     let leaving = core.head[position as usize] as usize;
-    core.apply_flips(flips);
+    core.apply_flips();
     let step = core.reduced[entering as usize] / core.scratch.row.get(entering);
     core.move_reduced(leaving, entering, step);
     let bound = if sign < 0.0 { core.work_lower[leaving] } else { core.work_upper[leaving] };
@@ -113,18 +109,27 @@ fn pivot(
 }
 
 impl Core {
-    /// The position with the largest squared violation by weight, lowest position on ties.
-    fn leaving_position(&self, aside: &[u32]) -> Option<u32> {
-        let mut best = None;
-        let mut best_ratio = 0.0;
-        for (position, (&violation, &weight)) in
-            (0u32..).zip(self.violation.iter().zip(&self.weight))
-        {
-            if violation > best_ratio * weight && !aside.contains(&position) {
-                best = Some(position);
-                best_ratio = violation / weight;
+    /// The position with the largest squared violation by weight, lowest position on ties. Positions
+    /// that are violated no longer leave the list.
+    fn leaving_position(&mut self, aside: &[u32]) -> Option<u32> {
+        let (mut best, mut best_ratio) = (None, 0.0);
+        let (violation, weight) = (&self.violation, &self.weight);
+        let listed = &mut self.is_listed;
+        self.ticks += self.violated.len() as u64 / 4;
+        self.violated.retain(|&position| {
+            let squared = violation[position as usize];
+            if squared == 0.0 {
+                listed[position as usize] = false;
+                return false;
             }
-        }
+            let least = best_ratio * weight[position as usize];
+            let wins = squared > least || (squared == least && best > Some(position));
+            if wins && !aside.contains(&position) {
+                best = Some(position);
+                best_ratio = squared / weight[position as usize];
+            }
+            true
+        });
         best
     }
 
@@ -167,14 +172,14 @@ impl Core {
         moved
     }
 
-    /// Moves variables to their other bound and the basic values along.
-    fn apply_flips(&mut self, flips: &[u32]) {
-        if flips.is_empty() {
+    /// Moves the flipped variables to their other bound and the basic values along.
+    fn apply_flips(&mut self) {
+        if self.scratch.flipped.is_empty() {
             return;
         }
         let mut side = std::mem::take(&mut self.scratch.flips);
         side.clear();
-        for &j in flips {
+        for &j in &self.scratch.flipped {
             let at = j as usize;
             let range = self.work_upper[at] - self.work_lower[at];
             let change = if self.status[at] == Status::Lower { range } else { -range };
@@ -183,24 +188,32 @@ impl Core {
             self.ticks += for_column(&self.matrix, j, |row, value| side.add(row, value * change));
         }
         self.ticks += self.factor.ftran(&mut side);
-        for (position, change) in side.iter() {
+        side.drain(|position, change| {
             self.basic[position as usize] -= change;
             self.note_violation(position as usize);
-        }
-        side.clear();
+        });
         self.scratch.flips = side;
     }
 
     /// d ← d − step · (row ρ[A, −I]); what gets the wrong sign is shifted.
     fn move_reduced(&mut self, leaving: usize, entering: u32, step: f64) {
-        for k in 0..self.scratch.row.count() {
-            let j = self.scratch.row.indices()[k] as usize;
-            if self.status[j] != Status::Basic {
-                self.reduced[j] -= step * self.scratch.row.get(j as u32);
-                self.shift_if_wrong(j);
+        if step != 0.0 {
+            for (variable, alpha) in self.scratch.row.iter() {
+                let j = variable as usize;
+                let d = self.reduced[j] - step * alpha;
+                let is_wrong = match self.status[j] {
+                    Status::Basic => continue,
+                    Status::Lower => d < 0.0,
+                    Status::Upper => d > 0.0,
+                    Status::Free => d != 0.0,
+                };
+                self.reduced[j] = if is_wrong { 0.0 } else { d };
+                if is_wrong {
+                    self.work_cost[j] -= d;
+                }
             }
+            self.ticks += self.scratch.row.count() as u64;
         }
-        self.ticks += self.scratch.row.count() as u64;
         self.reduced[leaving] = -step;
         self.reduced[entering as usize] = 0.0;
     }

@@ -16,17 +16,17 @@ use crate::tolerances::{HARRIS_DUAL, PRIMAL, ratio_entry};
 use std::ops::Range;
 
 /// What the test says.
-#[derive(Debug)]
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(crate) enum Choice {
     /// Nothing stops the dual step: the row proves infeasibility.
     None,
-    /// A variable enters after the others flip.
-    Enter { entering: u32, flips: Vec<u32> },
+    /// A variable enters after those in `scratch.flipped` flip.
+    Enter { entering: u32 },
 }
 
 /// A variable that bounds the step.
 #[derive(Clone, Copy, Debug)]
-struct Breakpoint {
+pub(crate) struct Breakpoint {
     variable: u32,
     alpha: f64,
     slack: f64,
@@ -46,22 +46,57 @@ impl Breakpoint {
 
 /// Chooses the entering variable for the row in `scratch.row`.
 pub(crate) fn choose(core: &mut Core, position: u32, sign: f64) -> Choice {
-    let mut points = breakpoints(core, sign);
+    let mut points = std::mem::take(&mut core.scratch.points);
+    list_breakpoints(core, sign, &mut points);
+    core.scratch.flipped.clear();
     core.ticks += points.len() as u64;
     let slope = core.violation[position as usize].sqrt();
-    if let Some(entering) = first_group(&points, slope) {
-        return Choice::Enter { entering, flips: Vec::new() };
-    }
+    let choice = match first_group(&points, slope) {
+        Some(entering) => Choice::Enter { entering },
+        None => long_step(core, &mut points, slope),
+    };
+    core.scratch.points = points;
+    choice
+}
+
+/// The step past the first group: sorts the breakpoints up to where the slope ends.
+fn long_step(core: &mut Core, points: &mut Vec<Breakpoint>, slope: f64) -> Choice {
+    keep_near(points, slope);
     points
         .sort_unstable_by(|a, b| a.ratio().total_cmp(&b.ratio()).then(a.variable.cmp(&b.variable)));
     core.ticks += points.len() as u64;
-    let Some(groups) = profitable_groups(&points, slope) else { return Choice::None };
-    let last = best_group(&points, &groups);
+    let Some(groups) = profitable_groups(points, slope) else { return Choice::None };
+    let last = best_group(points, &groups);
     let Some(entering) = points[groups[last].clone()].iter().reduce(larger_pivot) else {
         return Choice::None;
     };
-    let flips = points[..groups[last].start].iter().map(|point| point.variable).collect();
-    Choice::Enter { entering: entering.variable, flips }
+    core.scratch.flipped.extend(points[..groups[last].start].iter().map(|point| point.variable));
+    Choice::Enter { entering: entering.variable }
+}
+
+/// Drops the breakpoints far beyond the one where the slope ends: a distance grown in tenfold steps
+/// from the nearest one until the slope ends within it.
+fn keep_near(points: &mut Vec<Breakpoint>, slope: f64) {
+    let nearest = points.iter().map(Breakpoint::relaxed).reduce(|a, b| if b < a { b } else { a });
+    let Some(mut reach) = nearest else { return };
+    let mut near = 0;
+    let mut left = slope;
+    while near < points.len() && left > PRIMAL {
+        reach *= 10.0;
+        let mut k = near;
+        while k < points.len() {
+            if points[k].ratio() <= reach {
+                left -= points[k].alpha * points[k].range;
+                points.swap(k, near);
+                near += 1;
+            }
+            k += 1;
+        }
+        if reach == f64::INFINITY {
+            break;
+        }
+    }
+    points.truncate(near);
 }
 
 /// The largest pivot of the first group, when the slope ends there: the common case, without
@@ -76,30 +111,30 @@ fn first_group(points: &[Breakpoint], slope: f64) -> Option<u32> {
     group().reduce(larger_pivot).map(|point| point.variable)
 }
 
-/// The variables whose reduced cost falls to zero along the step.
-fn breakpoints(core: &Core, sign: f64) -> Vec<Breakpoint> {
-    let mut points = Vec::new();
-    let least = ratio_entry(core.scratch.row.largest());
+/// Lists the variables whose reduced cost falls to zero along the step.
+fn list_breakpoints(core: &Core, sign: f64, points: &mut Vec<Breakpoint>) {
+    points.clear();
+    let mut largest = 0.0;
     for (variable, value) in core.scratch.row.iter() {
         let j = variable as usize;
         let alpha = sign * value;
+        if alpha.abs() > largest {
+            largest = alpha.abs();
+        }
         let blocks = match core.status[j] {
             Status::Basic => false,
-            Status::Lower => alpha > least && !core.is_fixed(j),
-            Status::Upper => alpha < -least,
-            Status::Free => alpha.abs() > least,
+            Status::Lower => alpha > 0.0,
+            Status::Upper => alpha < 0.0,
+            Status::Free => true,
         };
         if blocks {
             let range = core.work_upper[j] - core.work_lower[j];
-            points.push(Breakpoint {
-                variable,
-                alpha: alpha.abs(),
-                slack: core.reduced[j].abs(),
-                range,
-            });
+            let slack = core.reduced[j].abs();
+            points.push(Breakpoint { variable, alpha: alpha.abs(), slack, range });
         }
     }
-    points
+    let least = ratio_entry(largest);
+    points.retain(|point| point.alpha > least);
 }
 
 /// The groups up to the one where the slope would end; none when it never does.

@@ -155,17 +155,16 @@ impl Pivots {
 
     /// L by column, in steps.
     pub(crate) fn lower_columns(&self) -> Triangle {
-        let mut start = vec![0];
-        start.extend_from_slice(&self.lower_end);
+        let end = self.lower_end.iter().map(|&end| end as u32).collect();
         let index = self.lower.iter().map(|&(row, _)| self.step_of_row[row as usize]).collect();
-        Triangle::new(start, index, self.lower.iter().map(|&(_, value)| value).collect())
+        Triangle::new(end, index, self.lower.iter().map(|&(_, value)| value).collect())
     }
 
     /// U by row, in steps, without the columns that were replaced.
     pub(crate) fn upper_rows(&self) -> Triangle {
-        let mut start = Vec::with_capacity(self.upper_end.len() + 1);
-        let (mut index, mut value) = (Vec::new(), Vec::new());
-        start.push(0);
+        let mut ends = Vec::with_capacity(self.upper_end.len());
+        let mut index = Vec::with_capacity(self.upper.len());
+        let mut value = Vec::with_capacity(self.upper.len());
         let mut first = 0;
         for &end in &self.upper_end {
             for &(position, entry) in &self.upper[first..end] {
@@ -174,9 +173,9 @@ impl Pivots {
                     value.push(entry);
                 }
             }
-            start.push(index.len());
+            ends.push(index.len() as u32);
             first = end;
         }
-        Triangle::new(start, index, value)
+        Triangle::new(ends, index, value)
     }
 }

@@ -1,164 +1,258 @@
-//! Solves with a sparse triangular matrix whose unknowns are numbered by pivot step.
+//! Solves with a sparse triangular matrix whose unknowns are numbered by slot.
 //!
-//! Node k lists the places its value is subtracted from: x_i ← x_i − t_ik x_k, after
-//! x_k ← x_k / d_k where there is a diagonal. With few nonzeros on the right the nodes that
-//! can become nonzero are found first by depth-first search (Gilbert, Peierls 1988) and taken in
-//! the order of steps, so that both ways give the same bits.
+//! Slot k lists the places its value is subtracted from: x_i ← x_i − t_ik x_k, after
+//! x_k ← x_k / d_k where there is a diagonal. With few nonzeros only the slots that become nonzero
+//! are taken, in order, from the queue of the work vector; once many have been, the rest is walked
+//! slot by slot. Both ways do the same operations in the same order and give the same bits.
+//!
+//! The lists can grow and shrink between solves (see `forrest_tomlin`).
+//!
+//! Source: Gilbert, Peierls 1988; Hall, McKinnon 2005 (when to look for sparsity).
 
-use crate::sparse::SparseVector;
+use super::work::Work;
 use crate::tolerances::HYPERSPARSE;
 
-/// Which way the steps are taken.
+/// Which way the slots are taken.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(crate) enum Direction {
     Forward,
     Backward,
 }
 
-/// A triangular matrix without its diagonal.
+/// A triangular matrix without its diagonal, one list of entries a slot.
 #[derive(Clone, Debug, Default)]
 pub(crate) struct Triangle {
-    start: Vec<usize>,
+    start: Vec<u32>,
+    end: Vec<u32>,
+    /// Where the space of each list ends.
+    room: Vec<u32>,
     index: Vec<u32>,
     value: Vec<f64>,
-}
-
-/// Scratch of the search for reachable steps.
-#[derive(Clone, Debug, Default)]
-pub(crate) struct Reach {
-    stack: Vec<u32>,
-    seen: Vec<bool>,
-}
-
-impl Reach {
-    /// Scratch for this many steps.
-    pub(crate) fn new(size: usize) -> Self {
-        Self { stack: Vec::new(), seen: vec![false; size] }
-    }
+    nonzeros: usize,
 }
 
 impl Triangle {
-    /// A triangle from its three arrays.
-    pub(crate) fn new(start: Vec<usize>, index: Vec<u32>, value: Vec<f64>) -> Self {
-        Self { start, index, value }
+    /// A triangle from the ends of its lists and their entries, one after the other.
+    pub(crate) fn new(end: Vec<u32>, index: Vec<u32>, value: Vec<f64>) -> Self {
+        let mut start = Vec::with_capacity(end.len());
+        start.push(0);
+        start.extend_from_slice(&end);
+        start.pop();
+        Self { start, room: end.clone(), end, nonzeros: index.len(), index, value }
     }
 
     /// Number of nonzeros beside the diagonal.
     pub(crate) fn nonzeros(&self) -> usize {
-        self.index.len()
+        self.nonzeros
+    }
+
+    /// Number of lists.
+    fn slots(&self) -> usize {
+        self.start.len()
+    }
+
+    fn range(&self, slot: usize) -> std::ops::Range<usize> {
+        self.start[slot] as usize..self.end[slot] as usize
+    }
+
+    /// The entries (slot, value) of a list.
+    pub(crate) fn list(&self, slot: u32) -> impl Iterator<Item = (u32, f64)> + '_ {
+        let range = self.range(slot as usize);
+        self.index[range.clone()].iter().copied().zip(self.value[range].iter().copied())
     }
 
     /// The same entries listed from the other side.
     pub(crate) fn transposed(&self) -> Self {
-        let size = self.start.len() - 1;
-        let mut start = vec![0usize; size + 1];
-        for &i in &self.index {
-            start[i as usize + 1] += 1;
+        let size = self.slots();
+        let mut end = vec![0u32; size];
+        for slot in 0..size {
+            for &i in &self.index[self.range(slot)] {
+                end[i as usize] += 1;
+            }
         }
-        for k in 0..size {
-            start[k + 1] += start[k];
+        let mut next = Vec::with_capacity(size);
+        let mut sum = 0;
+        for count in &mut end {
+            next.push(sum);
+            sum += *count;
+            *count = sum;
         }
-        let mut next = start.clone();
-        let mut index = vec![0u32; self.index.len()];
-        let mut value = vec![0.0; self.index.len()];
-        for k in 0..size {
-            for e in self.start[k]..self.start[k + 1] {
-                let place = &mut next[self.index[e] as usize];
-                index[*place] = k as u32;
-                value[*place] = self.value[e];
+        let mut index = vec![0u32; self.nonzeros];
+        let mut value = vec![0.0; self.nonzeros];
+        for slot in 0..size {
+            for (i, entry) in self.list(slot as u32) {
+                let place = &mut next[i as usize];
+                index[*place as usize] = slot as u32;
+                value[*place as usize] = entry;
                 *place += 1;
             }
         }
-        Self { start, index, value }
+        Self::new(end, index, value)
     }
 
-    /// Solves in place. Returns the nonzeros touched.
+    /// Appends an empty list.
+    pub(crate) fn push_slot(&mut self) {
+        let at = self.index.len() as u32;
+        self.start.push(at);
+        self.end.push(at);
+        self.room.push(at);
+    }
+
+    /// Adds an entry to a list, which moves to the end of the store when its space is full.
+    pub(crate) fn insert(&mut self, slot: u32, index: u32, value: f64) {
+        let at = slot as usize;
+        if self.end[at] == self.room[at] {
+            let range = self.range(at);
+            let (length, start) = (range.len(), self.index.len());
+            self.index.extend_from_within(range.clone());
+            self.value.extend_from_within(range);
+            let room = start + 2 * length + 4;
+            self.index.resize(room, 0);
+            self.value.resize(room, 0.0);
+            self.start[at] = start as u32;
+            self.end[at] = (start + length) as u32;
+            self.room[at] = room as u32;
+        }
+        let place = self.end[at] as usize;
+        self.index[place] = index;
+        self.value[place] = value;
+        self.end[at] += 1;
+        self.nonzeros += 1;
+    }
+
+    /// Removes the entry of a list with this index, if there is one.
+    pub(crate) fn remove(&mut self, slot: u32, index: u32) {
+        let range = self.range(slot as usize);
+        if let Some(found) = self.index[range.clone()].iter().position(|&held| held == index) {
+            let (place, last) = (range.start + found, range.end - 1);
+            self.index[place] = self.index[last];
+            self.value[place] = self.value[last];
+            self.end[slot as usize] -= 1;
+            self.nonzeros -= 1;
+        }
+    }
+
+    /// Empties a list.
+    pub(crate) fn clear(&mut self, slot: u32) {
+        self.nonzeros -= self.range(slot as usize).len();
+        self.end[slot as usize] = self.start[slot as usize];
+    }
+
+    /// Solves in place; the list of `x` is in the order of the solve afterwards. Returns the
+    /// nonzeros touched.
     pub(crate) fn solve(
         &self,
         diagonal: Option<&[f64]>,
-        x: &mut SparseVector,
+        x: &mut Work,
         direction: Direction,
-        reach: &mut Reach,
     ) -> u64 {
-        let size = x.len();
-        if (x.count() as f64) < HYPERSPARSE * size as f64 {
-            let searched = self.list_reach(x, reach);
-            if (x.count() as f64) < HYPERSPARSE * 4.0 * size as f64 {
-                x.sort();
-                return searched + self.solve_listed(diagonal, x, direction);
-            }
+        match (direction, diagonal) {
+            (Direction::Forward, None) => self.forward::<false>(&[], x),
+            (Direction::Forward, Some(diagonal)) => self.forward::<true>(diagonal, x),
+            (Direction::Backward, None) => self.backward::<false>(&[], x),
+            (Direction::Backward, Some(diagonal)) => self.backward::<true>(diagonal, x),
         }
-        self.solve_all(diagonal, x, direction)
     }
 
-    /// Lists every step that the listed ones can reach.
-    fn list_reach(&self, x: &mut SparseVector, reach: &mut Reach) -> u64 {
-        reach.stack.extend_from_slice(x.indices());
-        for &k in x.indices() {
-            reach.seen[k as usize] = true;
-        }
-        let mut ticks = 0;
-        while let Some(k) = reach.stack.pop() {
-            for &i in &self.index[self.start[k as usize]..self.start[k as usize + 1]] {
-                ticks += 1;
-                if !reach.seen[i as usize] {
-                    reach.seen[i as usize] = true;
-                    x.list(i);
-                    reach.stack.push(i);
+    /// Number of nonzeros from which every slot is walked.
+    fn many(&self) -> usize {
+        (HYPERSPARSE * self.slots() as f64) as usize
+    }
+
+    /// Slots ascending.
+    fn forward<const DIAGONAL: bool>(&self, diagonal: &[f64], x: &mut Work) -> u64 {
+        let (many, mut ticks, mut word) = (self.many(), 0, 0);
+        let mut next = 0;
+        if x.index.len() <= many {
+            x.queue_listed();
+            next = self.slots();
+            while word < x.bits.len() {
+                let set = x.bits[word];
+                if set == 0 {
+                    word += 1;
+                    continue;
+                }
+                x.bits[word] = set & (set - 1);
+                let k = word * 64 + set.trailing_zeros() as usize;
+                ticks += self.step::<DIAGONAL, true>(k, diagonal, x);
+                if x.index.len() > many {
+                    x.bits[word..].fill(0);
+                    next = k + 1;
+                    break;
                 }
             }
+        } else {
+            x.index.clear();
         }
-        for &k in x.indices() {
-            reach.seen[k as usize] = false;
+        ticks += (self.slots() - next) as u64 / 8;
+        for k in next..self.slots() {
+            ticks += self.step::<DIAGONAL, false>(k, diagonal, x);
         }
         ticks
     }
 
-    /// Takes the listed steps only; the list is sorted and closed.
-    fn solve_listed(
+    /// Slots descending.
+    fn backward<const DIAGONAL: bool>(&self, diagonal: &[f64], x: &mut Work) -> u64 {
+        let (many, mut ticks, mut word) = (self.many(), 0, x.bits.len());
+        let mut next = self.slots();
+        if x.index.len() <= many {
+            x.queue_listed();
+            next = 0;
+            while word > 0 {
+                let set = x.bits[word - 1];
+                if set == 0 {
+                    word -= 1;
+                    continue;
+                }
+                let top = 63 - set.leading_zeros() as usize;
+                x.bits[word - 1] = set & !(1 << top);
+                let k = (word - 1) * 64 + top;
+                ticks += self.step::<DIAGONAL, true>(k, diagonal, x);
+                if x.index.len() > many {
+                    x.bits[..word].fill(0);
+                    next = k;
+                    break;
+                }
+            }
+        } else {
+            x.index.clear();
+        }
+        ticks += next as u64 / 8;
+        for k in (0..next).rev() {
+            ticks += self.step::<DIAGONAL, false>(k, diagonal, x);
+        }
+        ticks
+    }
+
+    /// One step: settles x_k, lists it and subtracts it where it stands.
+    #[inline]
+    fn step<const DIAGONAL: bool, const QUEUE: bool>(
         &self,
-        diagonal: Option<&[f64]>,
-        x: &mut SparseVector,
-        direction: Direction,
+        k: usize,
+        diagonal: &[f64],
+        x: &mut Work,
     ) -> u64 {
-        let mut ticks = 0;
-        for at in 0..x.count() {
-            let at = if direction == Direction::Forward { at } else { x.count() - 1 - at };
-            ticks += self.step(x.indices()[at], diagonal, x);
-        }
-        ticks
-    }
-
-    /// Takes every step.
-    fn solve_all(
-        &self,
-        diagonal: Option<&[f64]>,
-        x: &mut SparseVector,
-        direction: Direction,
-    ) -> u64 {
-        let size = x.len() as u32;
-        let mut ticks = u64::from(size) / 8;
-        for k in 0..size {
-            let k = if direction == Direction::Forward { k } else { size - 1 - k };
-            ticks += self.step(k, diagonal, x);
-        }
-        ticks
-    }
-
-    /// One step: settles x_k and subtracts it where it stands.
-    fn step(&self, k: u32, diagonal: Option<&[f64]>, x: &mut SparseVector) -> u64 {
-        let mut pivot = x.get(k);
+        let mut pivot = x.value[k];
         if pivot == 0.0 {
             return 0;
         }
-        if let Some(diagonal) = diagonal {
-            pivot /= diagonal[k as usize];
-            x.set(k, pivot);
+        if pivot.abs() <= x.drop {
+            x.value[k] = 0.0;
+            return 0;
         }
-        let range = self.start[k as usize]..self.start[k as usize + 1];
-        for (&i, &t) in self.index[range.clone()].iter().zip(&self.value[range.clone()]) {
-            x.add(i, -t * pivot);
+        if DIAGONAL {
+            pivot /= diagonal[k];
+            x.value[k] = pivot;
         }
-        1 + range.len() as u64
+        x.index.push(k as u32);
+        let range = self.range(k);
+        let count = range.len() as u64;
+        for (&i, &t) in self.index[range.clone()].iter().zip(&self.value[range]) {
+            x.value[i as usize] -= t * pivot;
+            if QUEUE {
+                x.bits[i as usize / 64] |= 1 << (i % 64);
+            }
+        }
+        1 + count
     }
 }

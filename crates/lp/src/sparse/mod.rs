@@ -1,9 +1,12 @@
-//! Sparse storage: the matrix by row and by column, and the work vector with an index list.
+//! Sparse storage: the matrix by row and by column, its rows as pricing sees them, and the work
+//! vector with an index list.
 
 mod matrix;
+mod partition;
 mod vector;
 
 pub(crate) use matrix::Matrix;
+pub(crate) use partition::Partition;
 pub(crate) use vector::SparseVector;
 
 /// The largest size of a number; 0 when there is none.

@@ -67,11 +67,6 @@ impl SparseVector {
         &self.index
     }
 
-    /// Sorts the list of places.
-    pub(crate) fn sort(&mut self) {
-        self.index.sort_unstable();
-    }
-
     /// The listed places with their values.
     pub(crate) fn iter(&self) -> impl Iterator<Item = (u32, f64)> + '_ {
         self.index.iter().map(|&i| (i, self.value[i as usize]))
@@ -85,16 +80,14 @@ impl SparseVector {
         }
     }
 
-    /// Moves the values through a map of places into `target`, leaving this vector empty; tiny
-    /// values are dropped.
-    pub(crate) fn drain_into(&mut self, map: &[u32], drop: f64, target: &mut Self) {
+    /// Calls `visit` with every nonzero value and empties the vector.
+    pub(crate) fn drain(&mut self, mut visit: impl FnMut(u32, f64)) {
         for &i in &self.index {
-            let value = self.value[i as usize];
-            if value.abs() > drop {
-                target.set(map[i as usize], value);
-            }
-            self.value[i as usize] = 0.0;
+            let value = std::mem::take(&mut self.value[i as usize]);
             self.listed[i as usize] = false;
+            if value != 0.0 {
+                visit(i, value);
+            }
         }
         self.index.clear();
     }

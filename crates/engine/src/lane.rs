@@ -17,7 +17,7 @@ use tree::{NodeId, Search};
 
 use crate::fault::fault;
 use crate::load::{Loaded, Loading};
-use crate::map::{self, Stops};
+use crate::map::{self, Drawings};
 use crate::outbox::Outbox;
 use crate::readings::Readings;
 
@@ -41,7 +41,7 @@ enum Stage {
 #[derive(Debug)]
 struct Solver {
     model: Rc<Model>,
-    stops: Stops,
+    drawings: Drawings,
     search: Search,
     told: u64,
 }
@@ -126,8 +126,8 @@ impl Lane {
                 }
             }
         }
-        let stops = Stops::new(&model, &stops);
-        Stage::Root(Box::new(Solver { model, stops, search, told: 0 }))
+        let drawings = Drawings::new(&model, &stops);
+        Stage::Root(Box::new(Solver { model, drawings, search, told: 0 }))
     }
 
     fn solve(
@@ -308,7 +308,7 @@ impl Lane {
         };
         let reply = match solver.search.inspect(node) {
             Some(view) => {
-                Reply::Node(Box::new(map::node_detail(&solver.model, &solver.stops, &view)))
+                Reply::Node(Box::new(map::node_detail(&solver.model, &solver.drawings, &view)))
             }
             None => Reply::Failed(fault("rival", format!("node {} is not solved yet", node.0))),
         };

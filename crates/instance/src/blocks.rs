@@ -255,7 +255,10 @@ pub(crate) fn describe_all(instance: &mut Instance, tables: bool) -> Vec<String>
                 instance.assume(name, datum.clone());
             }
         }
-        sentences.extend(facts::of(&square, ""));
+        sentences.extend(match instance.ends() {
+            Some((start, end)) => facts::of_path(&square, (start, end)),
+            None => facts::of(&square, ""),
+        });
     }
     sentences
 }
@@ -333,6 +336,24 @@ mod tests {
         let cells = BTreeMap::from([(vec![label("Ash")], half)]);
         assert_eq!(instance.get("d"), Some(&Datum::Table { arity: 1, cells }));
         assert!(reading.facts.contains(&label("V is a set of 3 labels.")), "{:?}", reading.facts);
+    }
+
+    /// Facts on round trips (the triangle inequality, "there is no round") were once told of
+    /// data for a path, where most pairs have no arc and nothing leads back.
+    #[test]
+    fn a_path_is_not_described_as_a_round_trip() {
+        let text = "V\nAsh Birch Cedar\n\nc by i, j\nAsh Birch 12\nBirch Cedar -7\n\n";
+        let facts = |ends: &str| read(&format!("{text}{ends}"), None).facts.join(" ");
+        let trip = facts("");
+        assert!(trip.contains("Triangle inequality") && trip.contains("no round"), "{trip}");
+        let path = facts("s = Ash\nt = Cedar\n");
+        assert!(!path.contains("riangle") && !path.contains("round"), "{path}");
+        assert!(path.contains("3 stops, 2 drives."), "{path}");
+        assert!(path.contains("Cedar can be reached from Ash, in 2 drives or more."), "{path}");
+        assert!(path.contains("negative"), "{path}");
+        let back = facts("s = Cedar\nt = Ash\n");
+        assert!(back.contains("Ash cannot be reached from Cedar: there is no path."), "{back}");
+        assert!(facts("s = Ash\nt = Dover\n").contains("no round"), "an end that is no stop");
     }
 
     #[test]

@@ -103,6 +103,52 @@ pub(crate) fn of_list(square: &Square, unit: &str, costs: bool) -> Vec<String> {
     facts
 }
 
+/// Every sentence on the arcs of a path from a start to an end, both stops. O(n²).
+pub(crate) fn of_path(square: &Square, (start, end): (&str, &str)) -> Vec<String> {
+    let drives = plural(square.cells.iter().flatten().count(), "drive", "drives");
+    let mut facts = vec![format!("{}, {drives}.", plural(square.len(), "stop", "stops"))];
+    match Scaled::of(square) {
+        Some(scaled) => {
+            facts.push(symmetry(square, &scaled));
+            facts.extend(odd_values(square, &scaled));
+        }
+        None => facts.push("The numbers are too long to be compared with each other.".to_owned()),
+    }
+    facts.push(match fewest_drives(square, start, end) {
+        Some(0) => format!("{start} is both start and end."),
+        Some(fewest) => format!(
+            "{end} can be reached from {start}, in {} or more.",
+            plural(fewest, "drive", "drives")
+        ),
+        None => format!("{end} cannot be reached from {start}: there is no path."),
+    });
+    facts
+}
+
+/// The fewest drives from a stop to another, breadth first; none when it is not reached.
+fn fewest_drives(square: &Square, start: &str, end: &str) -> Option<usize> {
+    let place = |label: &str| square.labels.iter().position(|known| known == label);
+    let (start, end) = (place(start)?, place(end)?);
+    let mut seen = vec![false; square.len()];
+    seen[start] = true;
+    let (mut front, mut drives) = (vec![start], 0);
+    while !front.contains(&end) {
+        let mut next = Vec::new();
+        for i in front {
+            for j in 0..square.len() {
+                if square.at(i, j).is_some() && !std::mem::replace(&mut seen[j], true) {
+                    next.push(j);
+                }
+            }
+        }
+        if next.is_empty() {
+            return None;
+        }
+        (front, drives) = (next, drives + 1);
+    }
+    Some(drives)
+}
+
 fn symmetry(square: &Square, scaled: &Scaled) -> String {
     let n = scaled.n;
     let (mut differ, mut one_way) = (0, 0);

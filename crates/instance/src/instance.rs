@@ -199,6 +199,17 @@ impl Instance {
         }
     }
 
+    /// Start and end of a path: the elements `s` and `t`, where both are stops. Such an instance
+    /// need not hold a round trip.
+    #[must_use]
+    pub fn ends(&self) -> Option<(&str, &str)> {
+        let stop = |name: &str| match self.get(name) {
+            Some(Datum::Element(label)) if self.stops().contains(label) => Some(label.as_str()),
+            _ => None,
+        };
+        Some((stop("s")?, stop("t")?))
+    }
+
     /// The distances `c` over [`Self::stops`] by rows, `None` where there is no drive; empty
     /// when the instance is no round trip. O(n² log n).
     #[must_use]

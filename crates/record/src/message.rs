@@ -183,6 +183,8 @@ pub struct Stop {
     pub x: f64,
     /// Place along, growing upwards.
     pub y: f64,
+    /// What the instance marks it as, such as "start"; mostly empty.
+    pub mark: String,
 }
 
 /// The code of a complaint that only tells what was assumed begins with this.
@@ -317,8 +319,10 @@ pub struct NodeDetail {
     pub path: Vec<Branching>,
     /// Every column with a value other than 0, or that is fractional.
     pub values: Vec<ColumnValue>,
-    /// Places of solution on the map: arcs with their value.
-    pub arcs: Vec<Arc>,
+    /// Ways to draw the solution, the one that suits best first.
+    pub drawings: Vec<Drawing>,
+    /// The cycle that proves it infeasible or unbounded, where the proof walks one.
+    pub cycle: Option<Cycle>,
     /// Members of families over subsets that the solution violates, with their sets.
     pub violated: Vec<ViolatedSubset>,
     /// Rows of the ray of an infeasible node, named, with multipliers.
@@ -340,6 +344,52 @@ pub struct ColumnValue {
     pub fractional: bool,
 }
 
+/// A way to draw a solution.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct Drawing {
+    /// The variables that it shows, with their indices' kind: "x on the map".
+    pub name: String,
+    /// What is drawn.
+    pub picture: Picture,
+}
+
+/// What is drawn of a solution.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub enum Picture {
+    /// Arcs and values at stops.
+    Map {
+        /// The arcs with their value.
+        arcs: Vec<Arc>,
+        /// Values at stops, by place in [`InstanceReport::stops`].
+        at: Vec<(u32, f64)>,
+    },
+    /// Values over time, one series a variable.
+    Bars {
+        /// The periods.
+        periods: Vec<i64>,
+        /// A variable and its value in each period; `None` where it has none.
+        series: Vec<(String, Vec<Option<f64>>)>,
+    },
+    /// Values by pair.
+    Grid {
+        /// The labels of the rows.
+        rows: Vec<String>,
+        /// The labels of the columns.
+        columns: Vec<String>,
+        /// Row, column and value, where it is not 0.
+        cells: Vec<(u32, u32, f64)>,
+    },
+}
+
+/// A cycle of pairs, such as one of negative length.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct Cycle {
+    /// Its stops in order; the first is not repeated.
+    pub stops: Vec<String>,
+    /// The sum along it.
+    pub total: f64,
+}
+
 /// An arc to draw, by stops.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
 pub struct Arc {
@@ -349,8 +399,8 @@ pub struct Arc {
     pub to: u32,
     /// The value.
     pub value: f64,
-    /// The column.
-    pub column: u32,
+    /// Its column; none for an arc that stands for a row.
+    pub column: Option<u32>,
 }
 
 /// A violated member of a family over subsets.

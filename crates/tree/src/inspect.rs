@@ -10,6 +10,7 @@ use lp::{Limits, Outcome};
 use model::{LabelId, Number};
 use separate::{Progress, Separator, Violated};
 
+use crate::cycle::{self, Cycle};
 use crate::event::{Branch, NodeId, NodeState};
 use crate::relaxation::{RowOrigin, direction};
 use crate::search::Search;
@@ -52,6 +53,8 @@ pub struct NodeView {
     pub violated: Vec<ViolatedSubset>,
     /// Rows of the ray of an infeasible node with their multipliers.
     pub ray: Vec<(String, f64)>,
+    /// The cycle that this ray, or the direction of an unbounded node, walks.
+    pub cycle: Option<Cycle>,
 }
 
 impl Search {
@@ -75,6 +78,7 @@ impl Search {
             reduced_costs: Vec::new(),
             violated: Vec::new(),
             ray: Vec::new(),
+            cycle: None,
         };
         self.fill(&mut view);
         Some(view)
@@ -82,6 +86,9 @@ impl Search {
 
     fn fill(&self, view: &mut NodeView) {
         let node = self.tree.node(view.node);
+        if node.state == NodeState::Unbounded {
+            view.cycle = self.cycle_without_bound();
+        }
         let (Some(relaxation), Some(basis)) = (&self.relaxation, &node.basis) else { return };
         let Ok(mut simplex) = relaxation.rebuilt(node.rows as usize, &view.path) else { return };
         simplex.load_basis(basis);
@@ -95,8 +102,30 @@ impl Search {
                 view.x.clone_from(&solution.x);
                 view.violated = self.violated(&view.x);
             }
-            Outcome::Infeasible(ray) => view.ray = self.named_ray(&ray.multipliers),
+            Outcome::Infeasible(ray) => {
+                view.ray = self.named_ray(&ray.multipliers);
+                view.cycle = self.cycle_of(&ray.multipliers);
+            }
             Outcome::Unbounded { .. } | Outcome::Stopped { .. } => {}
+        }
+    }
+
+    /// The cycle that the rows of a ray walk, when they do and none of them is a separated one.
+    fn cycle_of(&self, ray: &[f64]) -> Option<Cycle> {
+        let origins = self.relaxation.as_ref()?.origins().iter().zip(ray);
+        let rows = origins.filter(|&(_, &y)| y != 0.0).map(|(origin, &y)| match origin {
+            RowOrigin::Written(row) => Some((*row, y)),
+            RowOrigin::Member { .. } => None,
+        });
+        cycle::of_rows(&self.model, &rows.collect::<Option<Vec<_>>>()?)
+    }
+
+    /// The cycle along which the objective has no bound, where its direction walks one. A search
+    /// ends with the LP that shows this, so it is still in hand.
+    fn cycle_without_bound(&self) -> Option<Cycle> {
+        match self.relaxation.as_ref()?.simplex.outcome()? {
+            Outcome::Unbounded { ray, .. } => cycle::of_columns(&self.model, ray),
+            _ => None,
         }
     }
 

@@ -52,6 +52,7 @@
 
 mod acts;
 mod branching;
+mod cycle;
 mod decide;
 mod event;
 mod inspect;
@@ -71,6 +72,7 @@ mod tour;
 mod work;
 
 pub use acts::{Act, Acted, Refusal};
+pub use cycle::Cycle;
 pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
 pub use inspect::{NodeView, ViolatedSubset};
 pub use root::{RootResult, Status};

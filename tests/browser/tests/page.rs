@@ -15,6 +15,9 @@ mod solving;
 #[path = "page/nodes.rs"]
 mod nodes;
 
+#[path = "page/drawings.rs"]
+mod drawings;
+
 #[path = "page/share.rs"]
 mod share;
 

@@ -183,7 +183,8 @@ mod tests {
     use record::message::Stop;
 
     fn report(stops: usize) -> InstanceReport {
-        let stop = |index: usize| Stop { label: format!("s{index}"), x: 0.0, y: 0.0 };
+        let stop =
+            |index: usize| Stop { label: format!("s{index}"), x: 0.0, y: 0.0, mark: String::new() };
         let matrix = (0..stops * stops)
             .map(|cell| (cell / stops != cell % stops).then_some((cell % stops) as f64))
             .collect();

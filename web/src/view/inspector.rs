@@ -13,7 +13,7 @@ use crate::state::document::{Accepted, Document};
 use crate::state::pointer::Shared;
 use crate::state::words::{branching, node_state};
 use crate::view::hands::{Hands, use_hands};
-use crate::view::map::Map;
+use crate::view::picture::{Pictures, cycle_words};
 use crate::view::rivals::HUES;
 use crate::view::values::Values;
 
@@ -46,6 +46,7 @@ pub(crate) struct InspectorProps {
 #[component]
 pub(crate) fn Inspector(props: &InspectorProps) -> Html {
     let hands = use_hands();
+    let drawn = use_state_eq(String::new);
     let selection = props.board.selection;
     let node = selection.and_then(|at| known(hands.as_ref()?, at));
     let wanted = node.as_ref().filter(|node| node.solved).map(|node| node.state);
@@ -64,7 +65,7 @@ pub(crate) fn Inspector(props: &InspectorProps) -> Html {
         >
             <h2 id={HEADING} tabindex="-1">{ heading(at, place) }</h2>
             if let (Some(detail), Some(accepted)) = (props.board.detail.clone(), props.document.accepted.clone()) {
-                <Detail {detail} {accepted} rival={props.board.lane(at.lane).rival.clone()} />
+                <Detail {detail} {accepted} rival={props.board.lane(at.lane).rival.clone()} {drawn} />
             } else if let Some(node) = node.filter(|node| !node.solved) {
                 { unsolved(&node, props.board.lane(at.lane).rival.as_deref()) }
             } else {
@@ -113,6 +114,7 @@ struct DetailProps {
     detail: Shared<NodeDetail>,
     accepted: Accepted,
     rival: Option<Shared<RivalReport>>,
+    drawn: UseStateHandle<String>,
 }
 
 #[component]
@@ -128,7 +130,6 @@ fn Detail(props: &DetailProps) -> Html {
         let named = |label: &String| report.stops.iter().position(|stop| stop.label == *label);
         Shared::new(violated.subset.iter().filter_map(named).collect::<Vec<usize>>())
     });
-    let arcs = use_memo(detail.clone(), |detail| Shared::new(detail.arcs.clone()));
     let show = {
         let (set, shown) = (set.setter(), *set);
         Callback::from(move |index: usize| set.set((shown != Some(index)).then_some(index)))
@@ -140,17 +141,13 @@ fn Detail(props: &DetailProps) -> Html {
                 { bound(detail) }
                 { path(&detail.path, props.rival.as_deref()) }
                 { violated(&detail.violated, *set, &show) }
+                { cycle(detail, &report.unit) }
                 { ray(detail) }
             </div>
-            if !report.stops.is_empty() && !detail.values.is_empty() {
-                <figure class="drawing">
-                    <Map
-                        report={report.clone()} arcs={(*arcs).clone()} set={tint} column={*column}
-                        label="The relaxation's solution on the map; its values are in the table"
-                    />
-                    <figcaption class="soft">{ "Width is the value; dashed where fractional. A drive keeps to the right of its way." }</figcaption>
-                </figure>
-            }
+            <Pictures
+                detail={detail.clone()} report={report.clone()} drawn={props.drawn.clone()} set={tint}
+                column={*column}
+            />
             if !detail.values.is_empty() {
             <Values
                 detail={detail.clone()} rival={props.rival.clone()} unit={report.unit.clone()}
@@ -237,6 +234,23 @@ fn violated(sets: &[ViolatedSubset], shown: Option<usize>, show: &Callback<usize
                 }
                 if more > 0 { <li class="soft">{ format!("and {more} more") }</li> }
             </ul>
+        </>
+    }
+}
+
+/// The cycle that proves it, in words.
+fn cycle(detail: &NodeDetail, unit: &str) -> Html {
+    let Some(cycle) = &detail.cycle else { return Html::default() };
+    let why = if detail.state == NodeState::Unbounded {
+        "Whatever goes once more around it, improves the objective: there is no best.".to_owned()
+    } else {
+        format!("Added up around it, its rows say 0 ≤ {}.", short(cycle.total))
+    };
+    html! {
+        <>
+            <h3>{ "A cycle that proves it" }</h3>
+            <p data-testid="cycle">{ cycle_words(cycle, unit) }</p>
+            <p class="small soft">{ why }</p>
         </>
     }
 }

@@ -12,7 +12,7 @@ use yew::prelude::*;
 use crate::state::board::{BoardAction, Selection};
 use crate::state::document::{DocumentAction, Slot};
 use crate::state::editor::Draft;
-use crate::state::lane::{Lane, Phase};
+use crate::state::lane::{Lane, LaneId, Phase};
 use crate::state::pointer::Shared;
 use crate::state::words::{advice, sentence, status};
 use crate::view::canvas::TreeCanvas;
@@ -240,6 +240,9 @@ pub(crate) fn is_over(lane: &Lane) -> bool {
 
 fn drawing(props: &LaneProps, hands: &Hands) -> Html {
     let id = props.slot.id;
+    if let Some(words) = without_bound(&props.lane) {
+        return to_the_root(id, hands, words);
+    }
     let (Some(axis), Some(tree)) = (props.axis, hands.session.tree(id)) else {
         return Html::default();
     };
@@ -276,6 +279,26 @@ fn drawing(props: &LaneProps, hands: &Hands) -> Html {
             />
         </>
     }
+}
+
+/// What leads to the root of a rival whose relaxation has no bound, so that no tree stands on
+/// the axis.
+fn without_bound(lane: &Lane) -> Option<&'static str> {
+    use record::results::Status;
+    match lane.root.as_ref()?.status {
+        Status::Infeasible => Some("Show the proof that there is no plan"),
+        Status::Unbounded => Some("Show why there is no best plan"),
+        _ => None,
+    }
+}
+
+fn to_the_root(lane: LaneId, hands: &Hands, words: &'static str) -> Html {
+    let board = hands.board.clone();
+    let onclick = Callback::from(move |_: MouseEvent| {
+        board.dispatch(BoardAction::Select(Selection { lane, node: NodeNumber(1) }));
+        focus_inspector();
+    });
+    html! { <button type="button" class="link" data-testid="show-root" {onclick}>{ words }</button> }
 }
 
 fn label(props: &LaneProps) -> String {

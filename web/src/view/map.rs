@@ -2,10 +2,10 @@
 //! their value and dashed where it is fractional. Laid out for the width there is, so that names
 //! keep their size.
 
-use record::message::{Arc, InstanceReport};
+use record::message::{Arc, InstanceReport, Stop};
 use report::labels::{Placed, Wish, place};
 use report::map::{Curve, Frame, Point, fit, hull};
-use report::number::fixed;
+use report::number::{fixed, short};
 use yew::prelude::*;
 
 use crate::browser::size::use_width;
@@ -25,6 +25,9 @@ const NAMED: usize = 150;
 pub(crate) struct MapProps {
     pub(crate) report: Shared<InstanceReport>,
     pub(crate) arcs: Shared<Vec<Arc>>,
+    /// Values to write at stops.
+    #[prop_or_default]
+    pub(crate) at: Option<Shared<Vec<(u32, f64)>>>,
     /// What it shows, for those who do not see it.
     pub(crate) label: AttrValue,
     /// A set of stops to tint.
@@ -41,6 +44,10 @@ struct Places {
     frame: Frame,
     stops: Vec<Point>,
     names: Vec<Option<Placed>>,
+    /// What is written at each stop.
+    texts: Vec<String>,
+    /// Turns values into widths: 1 at the greatest, if that is more than 1.
+    scale: f64,
 }
 
 /// The map.
@@ -48,8 +55,11 @@ struct Places {
 pub(crate) fn Map(props: &MapProps) -> Html {
     let node = use_node_ref();
     let width = use_width(&node);
-    let key = (props.report.clone(), props.arcs.clone(), width as u32);
-    let places = use_memo(key, |(report, arcs, width)| places(report, arcs, f64::from(*width)));
+    let key = (props.report.clone(), props.arcs.clone(), props.at.clone(), width as u32);
+    let places = use_memo(key, |(report, arcs, at, width)| {
+        let at = at.as_ref().map_or(&[][..], |at| at.as_slice());
+        places(report, (arcs, at), f64::from(*width))
+    });
     html! {
         <div class="map" ref={node}>
             if width > 0.0 {
@@ -58,7 +68,7 @@ pub(crate) fn Map(props: &MapProps) -> Html {
                     role="img" aria-label={props.label.clone()}
                 >
                     { tinted(props, &places) }
-                    for arc in props.arcs.iter() { { arc_path(arc, &places, props.column) } }
+                    for (key, arc) in props.arcs.iter().enumerate() { { arc_path(key, arc, &places, props.column) } }
                     { stops(&props.report, &places) }
                     { chosen(props, &places) }
                 </svg>
@@ -67,17 +77,17 @@ pub(crate) fn Map(props: &MapProps) -> Html {
     }
 }
 
-fn places(report: &InstanceReport, arcs: &[Arc], width: f64) -> Places {
+fn places(report: &InstanceReport, (arcs, at): (&[Arc], &[(u32, f64)]), width: f64) -> Places {
     let height = if width * 0.66 < 380.0 { width * 0.66 } else { 380.0 };
     let frame = Frame { width, height, margin: 26.0 };
     let given: Vec<Point> = report.stops.iter().map(|stop| (stop.x, stop.y)).collect();
     let stops = fit(&given, frame);
-    let wishes: Vec<Wish<'_>> = report
-        .stops
+    let texts = texts(report, at);
+    let wishes: Vec<Wish<'_>> = texts
         .iter()
         .zip(&stops)
         .enumerate()
-        .map(|(index, (stop, &at))| Wish { text: &stop.label, at, radius: radius(index) })
+        .map(|(index, (text, &at))| Wish { text, at, radius: radius(report, index) })
         .collect();
     let curves = arcs.iter().filter_map(|arc| curve(arc, &stops));
     let lines: Vec<Point> = curves.flat_map(|curve| curve.points(STEP)).collect();
@@ -86,45 +96,69 @@ fn places(report: &InstanceReport, arcs: &[Arc], width: f64) -> Places {
     } else {
         vec![None; wishes.len()]
     };
-    Places { frame, stops, names }
+    let most = arcs.iter().fold(1.0, |most, arc| if arc.value > most { arc.value } else { most });
+    Places { frame, stops, names, texts, scale: 1.0 / most }
 }
 
-fn radius(index: usize) -> f64 {
-    if index == 0 { FIRST } else { RADIUS }
+/// What is written at each stop: its label, what it is marked as, and its value.
+fn texts(report: &InstanceReport, at: &[(u32, f64)]) -> Vec<String> {
+    let mut texts: Vec<String> = report.stops.iter().map(|stop| stop.label.clone()).collect();
+    for (text, stop) in texts.iter_mut().zip(&report.stops) {
+        if !stop.mark.is_empty() {
+            *text = format!("{text} ({})", stop.mark);
+        }
+    }
+    for &(stop, value) in at {
+        if let Some(text) = texts.get_mut(stop as usize) {
+            *text = format!("{text}  {}", short(value));
+        }
+    }
+    texts
+}
+
+/// Marked stops are larger; where none is marked, the first, which is the depot.
+fn radius(report: &InstanceReport, index: usize) -> f64 {
+    let marked = |stop: &Stop| !stop.mark.is_empty();
+    let large = if report.stops.iter().any(marked) {
+        report.stops.get(index).is_some_and(marked)
+    } else {
+        index == 0
+    };
+    if large { FIRST } else { RADIUS }
 }
 
 fn stops(report: &InstanceReport, places: &Places) -> Html {
     html! {
         <>
             for (index, (stop, &(x, y))) in report.stops.iter().zip(&places.stops).enumerate() {
-                <circle key={index} class="stop" cx={px(x)} cy={px(y)} r={radius(index).to_string()}>
+                <circle key={index} class="stop" cx={px(x)} cy={px(y)} r={radius(report, index).to_string()}>
                     <title>{ stop.label.clone() }</title>
                 </circle>
             }
-            for (stop, name) in report.stops.iter().zip(&places.names) {
+            for (text, name) in places.texts.iter().zip(&places.names) {
                 if let Some(name) = name {
                     if let Some((from, to)) = name.leader {
                         <line class="leader" x1={px(from.0)} y1={px(from.1)} x2={px(to.0)} y2={px(to.1)} />
                     }
-                    <text class="name" x={px(name.x)} y={px(name.y)}>{ stop.label.clone() }</text>
+                    <text class="name" x={px(name.x)} y={px(name.y)}>{ text.clone() }</text>
                 }
             }
         </>
     }
 }
 
-fn arc_path(arc: &Arc, places: &Places, column: Option<u32>) -> Html {
+fn arc_path(key: usize, arc: &Arc, places: &Places, column: Option<u32>) -> Html {
     let Some(curve) = curve(arc, &places.stops) else { return Html::default() };
-    let chosen = column == Some(arc.column);
+    let chosen = column.is_some() && column == arc.column;
     let class = classes!(
         "arc",
         is_fractional(arc.value).then_some("fractional"),
         chosen.then_some("chosen")
     );
-    let size = if arc.value < 1.0 { arc.value } else { 1.0 };
+    let size = arc.value.abs() * places.scale;
     let width = px(0.8 + 2.4 * size);
     html! {
-        <g key={arc.column} {class}>
+        <g {key} {class}>
             <path d={path(&curve)} stroke-width={width} />
             if let Some([a, b, c]) = curve.arrow(3.0 + 2.0 * size) {
                 <polygon points={points(&[a, b, c])} />
@@ -135,7 +169,7 @@ fn arc_path(arc: &Arc, places: &Places, column: Option<u32>) -> Html {
 
 /// The name of the chosen arc, over everything else.
 fn chosen(props: &MapProps, places: &Places) -> Html {
-    let found = props.arcs.iter().find(|arc| props.column == Some(arc.column));
+    let found = props.arcs.iter().find(|arc| props.column.is_some() && props.column == arc.column);
     let Some((arc, curve)) = found.and_then(|arc| Some((arc, curve(arc, &places.stops)?))) else {
         return Html::default();
     };
@@ -153,7 +187,7 @@ fn tinted(props: &MapProps, places: &Places) -> Html {
 fn curve(arc: &Arc, stops: &[Point]) -> Option<Curve> {
     let from = stops.get(arc.from as usize)?;
     let to = stops.get(arc.to as usize)?;
-    Some(Curve::between(*from, *to))
+    (arc.from != arc.to).then(|| Curve::between(*from, *to))
 }
 
 /// Whether a value differs from a whole number by more than the tolerance of the search.

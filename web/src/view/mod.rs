@@ -3,6 +3,7 @@
 pub(crate) mod announcer;
 pub(crate) mod app;
 pub(crate) mod axis;
+mod bars;
 pub(crate) mod canvas;
 pub(crate) mod complaints;
 pub(crate) mod editor;
@@ -20,6 +21,7 @@ pub(crate) mod map;
 pub(crate) mod notes;
 pub(crate) mod paint;
 pub(crate) mod paste;
+mod picture;
 pub(crate) mod rivals;
 pub(crate) mod ruler;
 pub(crate) mod share;

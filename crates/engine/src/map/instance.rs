@@ -27,8 +27,21 @@ fn fill(report: &mut InstanceReport, instance: &Instance) {
     report.places_computed = layout.computed;
     let places = instance.stops().iter().zip(&layout.places);
     report.stops = places
-        .map(|(label, &(x, y))| Stop { label: label.clone(), x: tidy(x), y: tidy(y) })
+        .map(|(label, &(x, y))| {
+            let mark = mark(instance, label).to_owned();
+            Stop { label: label.clone(), x: tidy(x), y: tidy(y), mark }
+        })
         .collect();
     let values = instance.matrix().into_iter();
     report.matrix = values.map(|value| value.map(model::nearest_f64)).collect();
+}
+
+/// What a stop is marked as.
+fn mark(instance: &Instance, label: &str) -> &'static str {
+    match instance.ends() {
+        Some((start, end)) if start == label && end == label => "start and end",
+        Some((start, _)) if start == label => "start",
+        Some((_, end)) if end == label => "end",
+        _ => "",
+    }
 }

@@ -1,8 +1,6 @@
 //! What a rival is once it is expanded.
 
-use std::collections::BTreeMap;
-
-use model::{FamilyId, FamilyStatistics, LabelId, Model, Sense, VariableId};
+use model::{FamilyId, FamilyStatistics, Model, Sense};
 use record::message::{Complaint, RivalReport};
 use record::results::FamilyReport;
 use record::scenario::FamilyState;
@@ -67,50 +65,5 @@ fn state(state: model::FamilyState) -> FamilyState {
         model::FamilyState::In => FamilyState::In,
         model::FamilyState::OnDemand => FamilyState::OnDemand,
         model::FamilyState::Out => FamilyState::Out,
-    }
-}
-
-/// The stops of the map by label, and the variable that is drawn there.
-#[derive(Debug, Clone, Default)]
-pub(crate) struct Stops {
-    places: BTreeMap<LabelId, u32>,
-    drawn: Option<VariableId>,
-}
-
-impl Stops {
-    /// The stops of an instance as the model knows them. Drawn is the first variable over pairs
-    /// of stops that must be whole, else the first over pairs of stops: of labels and flows
-    /// beside arcs, a map shows the arcs.
-    pub(crate) fn new(model: &Model, labels: &[String]) -> Self {
-        let known = labels
-            .iter()
-            .zip(0..)
-            .filter_map(|(label, place)| model.labels().find(label).map(|label| (label, place)));
-        let mut stops = Self { places: known.collect(), drawn: None };
-        let over_pairs = |whole: bool| {
-            model.variables().iter().position(|variable| {
-                let columns = variable.columns.clone().map(model::ColumnId);
-                !variable.columns.is_empty()
-                    && columns
-                        .clone()
-                        .all(|column| stops.pair(model.column_tuple(column)).is_some())
-                    && columns
-                        .clone()
-                        .all(|column| !whole || model.columns()[column.index()].integer)
-            })
-        };
-        stops.drawn = over_pairs(true).or_else(|| over_pairs(false)).map(VariableId::from_index);
-        stops
-    }
-
-    /// The two stops of a column that is drawn on the map.
-    pub(crate) fn arc(&self, model: &Model, column: model::ColumnId) -> Option<(u32, u32)> {
-        let drawn = Some(model.columns()[column.index()].variable) == self.drawn;
-        if drawn { self.pair(model.column_tuple(column)) } else { None }
-    }
-
-    fn pair(&self, tuple: &[LabelId]) -> Option<(u32, u32)> {
-        let [from, to] = tuple else { return None };
-        Some((*self.places.get(from)?, *self.places.get(to)?))
     }
 }

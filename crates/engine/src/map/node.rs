@@ -1,10 +1,10 @@
 //! A node in full.
 
 use model::{ColumnId, Model};
-use record::message::{Arc, ColumnValue, NodeDetail, ViolatedSubset};
+use record::message::{ColumnValue, Cycle, NodeDetail, ViolatedSubset};
 
 use super::event::{branch, node_state, number};
-use super::{Stops, finite, tidy};
+use super::{Drawings, finite, tidy};
 
 /// Values of less are not listed.
 const ZERO: f64 = 1e-9;
@@ -12,9 +12,8 @@ const ZERO: f64 = 1e-9;
 /// Values nearer to a whole number are whole: the search's own tolerance.
 const INTEGRALITY: f64 = 1e-6;
 
-/// The node as it is shown: values that are not 0, arcs between stops, violated sets.
-pub(crate) fn node_detail(model: &Model, stops: &Stops, view: &tree::NodeView) -> NodeDetail {
-    let values = values(model, view);
+/// The node as it is shown: values that are not 0, drawings, violated sets.
+pub(crate) fn node_detail(model: &Model, drawings: &Drawings, view: &tree::NodeView) -> NodeDetail {
     NodeDetail {
         node: number(view.node),
         state: node_state(view.state),
@@ -22,8 +21,9 @@ pub(crate) fn node_detail(model: &Model, stops: &Stops, view: &tree::NodeView) -
         bound: view.bound.and_then(finite),
         checked_bound: view.checked_bound.as_ref().map(ToString::to_string),
         path: view.path.iter().map(branch).collect(),
-        arcs: values.iter().filter_map(|value| arc(model, stops, value)).collect(),
-        values,
+        values: values(model, view),
+        drawings: drawings.of(model, &view.x),
+        cycle: view.cycle.as_ref().map(|found| cycle(model, found)),
         violated: view.violated.iter().map(|found| violated(model, found)).collect(),
         ray: view.ray.iter().map(|(row, y)| (row.clone(), tidy(*y))).collect(),
     }
@@ -45,9 +45,9 @@ fn values(model: &Model, view: &tree::NodeView) -> Vec<ColumnValue> {
     values.collect()
 }
 
-fn arc(model: &Model, stops: &Stops, value: &ColumnValue) -> Option<Arc> {
-    let (from, to) = stops.arc(model, ColumnId(value.column))?;
-    Some(Arc { from, to, value: value.value, column: value.column })
+fn cycle(model: &Model, found: &tree::Cycle) -> Cycle {
+    let name = |&label: &model::LabelId| model.labels().name(label).to_owned();
+    Cycle { stops: found.stops.iter().map(name).collect(), total: model::nearest_f64(&found.total) }
 }
 
 fn violated(model: &Model, found: &tree::ViolatedSubset) -> ViolatedSubset {

@@ -9,6 +9,7 @@ use crate::workplace::{DATA, Workplace};
 use crate::{bundle, packages, parity};
 
 const REFERENCE: &str = "hullward-tests-reference";
+const BENCH: &str = "hullward-tests-bench";
 const BROWSER: &str = "hullward-tests-browser";
 
 /// Runs the parts.
@@ -33,12 +34,12 @@ pub(crate) fn run_parts(place: &Workplace, parts: &[Part]) -> Result<(), Fault> 
 
 fn native(place: &Workplace) -> Result<(), Fault> {
     step("format", || run(cargo(place).args(["fmt", "--all", "--check"])))?;
-    step("lint", || run(all_but(place, "clippy", &[REFERENCE]).args(LINT)))?;
+    step("lint", || run(all_but(place, "clippy", &[REFERENCE, BENCH]).args(LINT)))?;
     step("documentation", || {
-        let mut doc = all_but(place, "doc", &[REFERENCE]);
+        let mut doc = all_but(place, "doc", &[REFERENCE, BENCH]);
         run(doc.args(["--no-deps", "--document-private-items"]).env("RUSTDOCFLAGS", "-D warnings"))
     })?;
-    step("native tests", || run(&mut all_but(place, "test", &[REFERENCE, BROWSER])))
+    step("native tests", || run(&mut all_but(place, "test", &[REFERENCE, BENCH, BROWSER])))
 }
 
 fn page(place: &Workplace) -> Result<(), Fault> {
@@ -59,8 +60,9 @@ fn browser(place: &Workplace) -> Result<(), Fault> {
 fn reference(place: &Workplace) -> Result<(), Fault> {
     step("reference checks", || {
         packages::ensure(&["cmake", "libclang-dev"], "to build HiGHS for the reference checks")?;
-        run(cargo(place).args(["clippy", "--package", REFERENCE]).args(LINT))?;
-        run(cargo(place).args(["test", "--package", REFERENCE]))
+        let both = ["--package", REFERENCE, "--package", BENCH];
+        run(cargo(place).arg("clippy").args(both).args(LINT))?;
+        run(cargo(place).arg("test").args(both))
     })
 }
 

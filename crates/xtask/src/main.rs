@@ -10,6 +10,7 @@
     reason = "a tool for whoever develops: it speaks to the terminal"
 )]
 
+mod bench;
 mod bundle;
 mod check;
 mod compiler;
@@ -53,5 +54,6 @@ fn carry_out(task: &Task) -> Result<(), Fault> {
         }
         Task::Serve { port } => serve::serve(&place.dist(), *port),
         Task::Test { only } => check::run_parts(&place, only),
+        Task::Bench { arguments } => bench::measure(&place, arguments),
     }
 }

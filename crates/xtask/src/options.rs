@@ -7,6 +7,7 @@ pub(crate) const USAGE: &str = "\
 cargo xtask page [--port P] [--no-serve]   build the page into web/dist, then serve it
 cargo xtask serve [--port P]               serve web/dist as it is
 cargo xtask test [--only PART]...          what CI runs; PART: native, page, browser, reference
+cargo xtask bench lp [--quick] ...         speed of the linear programs; `bench help` says more
 
 --port P      the port on 127.0.0.1 (8080; 0 takes any free one)
 --no-serve    build only
@@ -35,6 +36,11 @@ pub(crate) enum Task {
     Test {
         /// The parts to run, in their order.
         only: Vec<Part>,
+    },
+    /// Measure speed.
+    Bench {
+        /// What to measure, as tests/bench reads it.
+        arguments: Vec<String>,
     },
 }
 
@@ -73,6 +79,9 @@ pub(crate) fn parse(arguments: &[String]) -> Result<Task, Fault> {
     let Some((task, rest)) = arguments.split_first() else {
         return Ok(Task::Help);
     };
+    if task == "bench" {
+        return Ok(Task::Bench { arguments: rest.to_vec() });
+    }
     let mut rest = rest.iter().map(String::as_str);
     let parsed = match task.as_str() {
         "help" | "--help" | "-h" => Task::Help,
@@ -155,6 +164,8 @@ mod tests {
         assert_eq!(read("page --no-serve"), Ok(Task::Page { port: 8080, serve: false }));
         assert_eq!(read("page --port 0"), Ok(Task::Page { port: 0, serve: true }));
         assert_eq!(read("serve --port 9000"), Ok(Task::Serve { port: 9000 }));
+        let words = ["lp", "--quick"].map(String::from).to_vec();
+        assert_eq!(read("bench lp --quick"), Ok(Task::Bench { arguments: words }));
         assert_eq!(read("test"), Ok(Task::Test { only: Part::ALL.to_vec() }));
     }
 

@@ -1,9 +1,10 @@
 //! Relaxations of known formulations on seeded instances: round trips, location, packing, lot
 //! sizing, one machine.
 
-use crate::families::INFINITY;
 use crate::random::Random;
 use crate::shadow::Shadow;
+
+const INFINITY: f64 = f64::INFINITY;
 
 /// No column.
 const NONE: usize = usize::MAX;
@@ -182,6 +183,27 @@ pub(crate) fn lot_sizing(periods: usize, seed: u64) -> Shadow {
             0.0,
         );
     }
+    shadow
+}
+
+/// Lot sizing with what is made in one period for another, on the same draw as [`lot_sizing`].
+/// Source: Krarup, Bilde 1977.
+pub(crate) fn lot_sizing_by_use(periods: usize, seed: u64) -> Shadow {
+    let mut random = Random::new(seed);
+    let mut shadow = Shadow::default();
+    let mut draw = |low, high| (0..periods).map(|_| random.whole(low, high)).collect::<Vec<f64>>();
+    let (demand, setup, unit, hold) = (draw(5, 40), draw(80, 300), draw(1, 5), draw(1, 3));
+    let open: Vec<usize> = setup.iter().map(|&cost| shadow.column(cost, 0.0, 1.0)).collect();
+    let mut make = vec![Vec::new(); periods];
+    for i in 0..periods {
+        for k in i..periods {
+            let held: f64 = hold[i..k].iter().sum();
+            let column = shadow.column(unit[i] + held, 0.0, INFINITY);
+            shadow.row(vec![(column, 1.0), (open[i], -demand[k])], -INFINITY, 0.0);
+            make[k].push((column, 1.0));
+        }
+    }
+    make.into_iter().zip(&demand).for_each(|(row, &need)| shadow.row(row, need, need));
     shadow
 }
 

@@ -4,8 +4,8 @@
 //! one.
 
 use crate::instances::{
-    facilities, lot_sizing, multi_commodity, one_machine, packing, position_labels,
-    single_commodity,
+    facilities, lot_sizing, lot_sizing_by_use, multi_commodity, one_machine, packing,
+    position_labels, single_commodity,
 };
 use crate::shadow::{Shadow, Verdict};
 use hullward_lp::{Limits, Progress};
@@ -41,6 +41,7 @@ fn location_packing_lots_and_machine() {
     check("packing 25x12", &packing(25, 12, 1), 7.0 + 112.0 / 150.0);
     check("packing 50x25", &packing(50, 25, 1), 14.0 + 97.0 / 150.0);
     check("lot sizing 50", &lot_sizing(50, 1), 4_162.973_298);
+    check("lot sizing by use 50", &lot_sizing_by_use(50, 1), 7_248.0);
     check("one machine 20", &one_machine(20, 1), 7_431.0);
 }
 

@@ -1,0 +1,27 @@
+//! A linear program as plain lists, as the shared generators fill it and every solver reads it.
+
+/// min cᵀx, L ≤ Ax ≤ U, l ≤ x ≤ u.
+#[derive(Clone, Debug, Default)]
+pub(crate) struct Shadow {
+    pub(crate) cost: Vec<f64>,
+    pub(crate) lower: Vec<f64>,
+    pub(crate) upper: Vec<f64>,
+    pub(crate) rows: Vec<(Vec<(usize, f64)>, f64, f64)>,
+}
+
+impl Shadow {
+    pub(crate) fn column(&mut self, cost: f64, lower: f64, upper: f64) -> usize {
+        self.cost.push(cost);
+        self.lower.push(lower);
+        self.upper.push(upper);
+        self.cost.len() - 1
+    }
+
+    pub(crate) fn row(&mut self, entries: Vec<(usize, f64)>, lower: f64, upper: f64) {
+        self.rows.push((entries, lower, upper));
+    }
+
+    pub(crate) fn nonzeros(&self) -> usize {
+        self.rows.iter().map(|row| row.0.len()).sum()
+    }
+}

@@ -2,7 +2,7 @@
 //! tableau.
 
 use crate::basis::Status;
-use crate::sparse::largest;
+use crate::sparse::{SparseVector, largest};
 use crate::state::{Core, excess, for_column};
 use crate::tolerances;
 
@@ -11,13 +11,7 @@ impl Core {
     pub(crate) fn compute_basic(&mut self) {
         let mut side = std::mem::take(&mut self.scratch.flips);
         side.clear();
-        for j in 0..self.variables() {
-            let value = self.nonbasic_value(j);
-            if value != 0.0 {
-                self.ticks +=
-                    for_column(&self.matrix, j as u32, |row, entry| side.add(row, -entry * value));
-            }
-        }
+        self.add_nonbasic(&mut side);
         self.ticks += self.factor.ftran(&mut side);
         self.violated.clear();
         self.is_listed.fill(false);
@@ -27,6 +21,17 @@ impl Core {
         }
         side.clear();
         self.scratch.flips = side;
+    }
+
+    /// Adds −N x_N to a vector by row.
+    pub(crate) fn add_nonbasic(&mut self, side: &mut SparseVector) {
+        for j in 0..self.variables() {
+            let value = self.nonbasic_value(j);
+            if value != 0.0 {
+                self.ticks +=
+                    for_column(&self.matrix, j as u32, |row, entry| side.add(row, -entry * value));
+            }
+        }
     }
 
     /// Sets the stored violation of a position from its value.
@@ -99,6 +104,12 @@ impl Core {
         rho.clear();
         rho.set(position, 1.0);
         self.ticks += self.factor.btran(&mut rho);
+        if self.care.refines {
+            let mut side = std::mem::take(&mut self.scratch.flips);
+            side.set(position, 1.0);
+            self.refine_backward(&mut side, &mut rho);
+            self.scratch.flips = side;
+        }
         self.scratch.rho = rho;
         self.price();
     }
@@ -135,6 +146,12 @@ impl Core {
         column.clear();
         for_column(&self.matrix, j, |row, value| column.set(row, value));
         self.ticks += self.factor.ftran_entering(&mut column);
+        if self.care.refines {
+            let mut side = std::mem::take(&mut self.scratch.flips);
+            for_column(&self.matrix, j, |row, value| side.set(row, value));
+            self.refine_forward(&mut side, &mut column);
+            self.scratch.flips = side;
+        }
         self.scratch.column = column;
     }
 
@@ -146,7 +163,7 @@ impl Core {
         let (least, agreement) = if self.factor.updates() > 0 {
             (tolerances::PIVOT_AFTER_UPDATES, tolerances::AGREEMENT_AFTER_UPDATES)
         } else {
-            (tolerances::PIVOT_FRESH, tolerances::AGREEMENT_FRESH)
+            (self.care.pivot, tolerances::AGREEMENT_FRESH)
         };
         let largest = self.scratch.column.largest();
         let least = if largest < 1.0 { least * largest } else { least };

@@ -28,9 +28,12 @@
 //! ```
 
 mod basis;
+mod care;
 mod change;
 mod check;
+mod checkpoint;
 mod compute;
+mod condition;
 mod dual;
 mod lu;
 mod machine;
@@ -38,14 +41,18 @@ mod outcome;
 mod primal;
 mod problem;
 mod random;
+mod refine;
 mod scale;
 mod simplex;
 mod sparse;
 mod state;
+mod tableau;
 mod tolerances;
 mod verify;
 
 pub use basis::{Basis, Repair};
+pub use checkpoint::Checkpoint;
 pub use outcome::{Outcome, Ray, Solution, StopReason};
 pub use problem::{Col, NewRow, Problem, ProblemError, RowId};
 pub use simplex::{Limits, Progress, Simplex, Stats};
+pub use tableau::TableauRow;

@@ -7,18 +7,14 @@
 //! numbers cannot be trusted: fresh factors, then the row or column is set aside, then the solve
 //! begins again with more care, at last it stops and says why.
 
+use crate::care::{ATTEMPTS, FROM_SLACK};
 use crate::dual::{self, DualState, DualStep};
 use crate::outcome::{Outcome, Ray, StopReason};
 use crate::primal::{self, PrimalState, PrimalStep};
 use crate::simplex::Limits;
 use crate::sparse::largest;
 use crate::state::{Core, Room};
-use crate::tolerances::{
-    DUAL, LAST_ATTEMPT, MARKOWITZ, MARKOWITZ_CAREFUL, PRIMAL, PRIMAL_RELATIVE,
-};
-
-/// The last attempt.
-const LAST: u32 = 3;
+use crate::tolerances::{DUAL, PRIMAL, PRIMAL_RELATIVE};
 
 /// Evaluations before a solve is begun again with more care.
 const ROUNDS: u32 = 20;
@@ -49,7 +45,7 @@ pub(crate) struct Machine {
     /// What the last solve ended with.
     pub(crate) outcome: Option<Outcome>,
     round: u32,
-    attempt: u32,
+    attempt: usize,
     began: u64,
     attempt_began: u64,
     next_cutoff_check: u64,
@@ -94,9 +90,9 @@ impl Machine {
     }
 
     /// Sets how much violation counts as none.
-    fn set_room(&self, core: &mut Core) {
+    fn set_room(core: &mut Core) {
         let largest = largest(core.cost.iter().copied());
-        let factor = if self.attempt < LAST { 1.0 } else { LAST_ATTEMPT };
+        let factor = core.care.room;
         core.room =
             Room { primal: factor * PRIMAL, dual: factor * DUAL + PRIMAL_RELATIVE * largest };
     }
@@ -105,20 +101,20 @@ impl Machine {
     fn begin_attempt(&mut self, core: &mut Core) {
         self.round = 0;
         self.attempt_began = core.iterations;
-        core.threshold = if self.attempt == 0 { MARKOWITZ } else { MARKOWITZ_CAREFUL };
-        self.set_room(core);
+        core.care = ATTEMPTS[self.attempt];
+        core.canonical &= self.attempt == 0;
+        Self::set_room(core);
         self.phase = Phase::Evaluate;
     }
 
-    /// Begins again with more care: from the current basis, from the slack basis, with looser
-    /// tolerances; then gives up.
+    /// Begins again with more care (see `care`); gives up after the last attempt.
     fn fall_back(&mut self, core: &mut Core, reason: String) {
         self.attempt += 1;
-        if self.attempt > LAST {
+        if self.attempt >= ATTEMPTS.len() {
             self.stop(core, StopReason::Numerical(reason));
             return;
         }
-        if self.attempt == 2 {
+        if self.attempt == FROM_SLACK {
             core.restore_given();
             core.reset_to_slack_basis();
         }
@@ -143,9 +139,14 @@ impl Machine {
         if !core.is_primal_feasible() && core.flip_to_right_side(tolerance) {
             core.compute_basic();
         }
+        let mut released = core.released_optimum();
+        if core.care.refines && !matches!(released, Some(Ok(_))) {
+            core.refine_basic();
+            released = core.released_optimum();
+        }
         let feasible = core.is_primal_feasible();
-        if feasible && core.worst_reduced() <= tolerance {
-            match core.solution() {
+        if let Some(solution) = released {
+            match solution {
                 Ok(solution) => self.finish(Outcome::Optimal(solution)),
                 Err(reason) => self.fall_back(core, reason),
             }
@@ -232,6 +233,9 @@ impl Machine {
                 None => self.distrust_position(core, position),
             },
             DualStep::Unsound { position } => self.distrust_position(core, position),
+            DualStep::Exhausted if core.care.refines && self.round < 3 => {
+                self.phase = Phase::Evaluate;
+            }
             DualStep::Exhausted => {
                 self.fall_back(core, "no violated row has a pivot that can be trusted".to_owned());
             }

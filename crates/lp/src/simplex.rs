@@ -39,8 +39,8 @@ pub struct Stats {
 /// A bounded simplex solver that keeps its basis between solves.
 #[derive(Clone, Debug)]
 pub struct Simplex {
-    core: Core,
-    machine: Machine,
+    pub(crate) core: Core,
+    pub(crate) machine: Machine,
 }
 
 impl Simplex {
@@ -179,6 +179,18 @@ impl Simplex {
             self.machine.step(&mut self.core);
         }
         self.machine.outcome.get_or_insert_with(nothing_released)
+    }
+
+    /// The bound on the optimal value that the duals of the current basis give with the costs as
+    /// given, at any point of a solve; none when a column without the bound it needs prices out.
+    /// Rounding is taken off; noise against missing bounds is forgiven. Work: a solve with the
+    /// factors and the nonzeros.
+    pub fn dual_bound(&mut self) -> Option<f64> {
+        if !self.machine.is_working() {
+            self.core.refactor_canonical();
+        }
+        let duals = self.core.given_duals();
+        self.core.dual_bound(&duals)
     }
 
     /// Work done since the solver was made.

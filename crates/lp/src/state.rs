@@ -6,11 +6,12 @@
 //! *working* costs and bounds (perturbation, shifts); the given ones stay.
 
 use crate::basis::Status;
+use crate::care::{ATTEMPTS, Care};
 use crate::dual::Breakpoint;
 use crate::lu::{BasisColumns, Factor};
 use crate::problem::Problem;
 use crate::sparse::{Matrix, Partition, SparseVector};
-use crate::tolerances::{self, MARKOWITZ, PRIMAL_RELATIVE};
+use crate::tolerances::{self, PRIMAL_RELATIVE};
 
 /// Vectors kept between iterations so that nothing is allocated in them.
 #[derive(Clone, Debug, Default)]
@@ -81,7 +82,7 @@ pub(crate) struct Core {
     pub(crate) factor: Factor,
     /// True while the factors belong to the sorted head and carry no update.
     pub(crate) canonical: bool,
-    pub(crate) threshold: f64,
+    pub(crate) care: Care,
     pub(crate) room: Room,
     pub(crate) scratch: Scratch,
     pub(crate) ticks: u64,
@@ -121,7 +122,7 @@ impl Core {
             devex: Vec::new(),
             factor: Factor::default(),
             canonical: false,
-            threshold: MARKOWITZ,
+            care: ATTEMPTS[0],
             room: Room::default(),
             scratch: Scratch::default(),
             ticks: 0,
@@ -212,7 +213,7 @@ impl Core {
     /// Factorises the basis in the order of the head, with the threshold of the attempt. Dependent
     /// columns are replaced by logicals; returns how many.
     pub(crate) fn refactor(&mut self) -> u32 {
-        self.refactor_with(self.threshold)
+        self.refactor_with(self.care.threshold)
     }
 
     fn refactor_with(&mut self, threshold: f64) -> u32 {
@@ -224,7 +225,7 @@ impl Core {
             start.push(entry.len());
         }
         let (factor, replaced, ticks) =
-            Factor::factorise(&BasisColumns::new(start, entry), threshold);
+            Factor::factorise(&BasisColumns::new(start, entry), threshold, self.care.singular);
         self.factor = factor;
         self.ticks += ticks;
         self.refactors += 1;
@@ -240,8 +241,8 @@ impl Core {
         replaced.len() as u32
     }
 
-    /// Factors of the sorted head without updates, the same ones in every attempt; returns how many
-    /// columns were replaced.
+    /// Factors of the sorted head without updates; attempts differ in which bases they count as
+    /// singular, not in the factors of one that is not. Returns how many columns were replaced.
     pub(crate) fn refactor_canonical(&mut self) -> u32 {
         if self.canonical && self.factor.updates() == 0 {
             return 0;
@@ -249,7 +250,7 @@ impl Core {
         let mut replaced = 0;
         loop {
             self.sort_head();
-            let now = self.refactor_with(MARKOWITZ);
+            let now = self.refactor_with(ATTEMPTS[0].threshold);
             replaced += now;
             if now == 0 {
                 break;

@@ -1,4 +1,5 @@
-//! Every tolerance of the kernel: what it bounds, absolute or relative, in which units.
+//! Every tolerance of the kernel that is the same in every attempt (see `care` for the others):
+//! what it bounds, absolute or relative, in which units.
 
 /// Violation of a bound or a row range that counts as none; absolute, in the units of the row.
 pub(crate) const PRIMAL: f64 = 1e-9;
@@ -18,21 +19,9 @@ pub(crate) const HARRIS_DUAL: f64 = 1e-9;
 /// How far basic values may overstep a bound in the first pass of the primal ratio test; absolute.
 pub(crate) const HARRIS_PRIMAL: f64 = 1e-9;
 
-/// Entries of a tableau row or column below this take no part in a ratio test; relative to the
-/// largest of them, and to 1 where that is larger.
-const RATIO_ENTRY: f64 = 1e-9;
-
-/// The smallest entry of a ratio test when this is the largest.
-pub(crate) fn ratio_entry(largest: f64) -> f64 {
-    if largest < 1.0 { RATIO_ENTRY * largest } else { RATIO_ENTRY }
-}
-
 /// Smallest pivot taken while the factors carry updates, below it they are made afresh first;
 /// relative to the largest entry of its column, and to 1 where that is larger.
 pub(crate) const PIVOT_AFTER_UPDATES: f64 = 1e-5;
-
-/// Smallest pivot taken with fresh factors; relative as above.
-pub(crate) const PIVOT_FRESH: f64 = 1e-11;
 
 /// Difference allowed between a pivot computed by row and by column while the factors carry
 /// updates; relative.
@@ -52,15 +41,6 @@ pub(crate) fn solve_drop(largest: f64) -> f64 {
 
 /// Entries of the active submatrix below this are taken for cancelled; absolute.
 pub(crate) const FACTOR_DROP: f64 = 1e-14;
-
-/// Pivots of the factorisation below this make the basis singular; absolute.
-pub(crate) const SINGULAR: f64 = 1e-12;
-
-/// Threshold pivoting: a pivot is at least this share of the largest entry of its row.
-pub(crate) const MARKOWITZ: f64 = 0.1;
-
-/// The same share when a solve is repeated with care.
-pub(crate) const MARKOWITZ_CAREFUL: f64 = 0.5;
 
 /// Columns and rows examined in one Markowitz search (Suhl, Suhl 1990).
 pub(crate) const MARKOWITZ_CANDIDATES: usize = 4;
@@ -107,6 +87,6 @@ pub(crate) const VERIFY_RAY: f64 = 1e-9;
 /// A Farkas proof must exceed zero by this; relative to the sum of the terms' sizes.
 pub(crate) const VERIFY_FARKAS: f64 = 1e-9;
 
-/// Factor on [`PRIMAL`] and [`DUAL`] in the last attempt on a problem whose values are too large
-/// for them.
-pub(crate) const LAST_ATTEMPT: f64 = 100.0;
+/// The same where no term was taken for noise: then only rounding stands between the value and its
+/// sign.
+pub(crate) const VERIFY_FARKAS_WHOLE: f64 = 1e-12;

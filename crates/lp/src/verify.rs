@@ -9,16 +9,23 @@ use crate::basis::Status;
 use crate::outcome::{Ray, Solution};
 use crate::sparse::largest;
 use crate::state::{Core, excess};
-use crate::tolerances::{VERIFY_DUAL, VERIFY_FARKAS, VERIFY_GAP, VERIFY_RAY, VERIFY_ROW};
+use crate::tolerances::{
+    VERIFY_DUAL, VERIFY_FARKAS, VERIFY_FARKAS_WHOLE, VERIFY_GAP, VERIFY_RAY, VERIFY_ROW,
+};
 
 /// Largest factor tried to make a ray whole: exact checks lose nothing then.
 const WHOLE_FACTOR: u32 = 64;
+
+/// What rounding can add to a sum of terms, relative to the sum of their sizes.
+const ROUNDING: f64 = 1e-14;
 
 /// A dual bound: its value and the sum of its terms' sizes.
 #[derive(Clone, Copy, Debug)]
 struct DualBound {
     value: f64,
     size: f64,
+    /// False when a term that is −∞ was taken for noise.
+    is_whole: bool,
 }
 
 impl DualBound {
@@ -33,6 +40,7 @@ impl DualBound {
             self.size += (d * bound).abs();
             return true;
         }
+        self.is_whole = false;
         d.abs() <= noise
     }
 }
@@ -61,7 +69,7 @@ impl Core {
     /// b(y), or none when a term is −∞ by more than `noise` times the size of its column.
     fn dual_value(&self, y: &[f64], with_costs: bool, noise: f64) -> Option<DualBound> {
         let n = self.columns();
-        let mut bound = DualBound { value: 0.0, size: 0.0 };
+        let mut bound = DualBound { value: 0.0, size: 0.0, is_whole: true };
         for (i, &multiplier) in y.iter().enumerate() {
             if !bound.add(multiplier, (self.lower[n + i], self.upper[n + i]), noise) {
                 return None;
@@ -83,9 +91,10 @@ impl Core {
         Some(bound)
     }
 
-    /// The bound that multipliers give on the optimal value, noise against missing bounds forgiven.
+    /// The bound that multipliers give on the optimal value, less what rounding may have added; noise
+    /// against missing bounds is forgiven.
     pub(crate) fn dual_bound(&self, y: &[f64]) -> Option<f64> {
-        self.dual_value(y, true, VERIFY_DUAL).map(|bound| bound.value)
+        self.dual_value(y, true, VERIFY_DUAL).map(|bound| bound.value - ROUNDING * bound.size)
     }
 
     /// The multipliers `sign` · `scratch.rho` as a ray in the caller's units, if they prove
@@ -111,8 +120,10 @@ impl Core {
 
     /// True when the multipliers prove that there is no feasible point.
     fn proves_infeasible(&self, multipliers: &[f64]) -> bool {
-        self.dual_value(multipliers, false, VERIFY_RAY)
-            .is_some_and(|bound| bound.value > VERIFY_FARKAS * bound.size)
+        self.dual_value(multipliers, false, VERIFY_RAY).is_some_and(|bound| {
+            let room = if bound.is_whole { VERIFY_FARKAS_WHOLE } else { VERIFY_FARKAS };
+            bound.value > room * bound.size
+        })
     }
 
     /// The values of the columns, basic ones clipped to their bounds (by no more than the
@@ -132,12 +143,14 @@ impl Core {
         x
     }
 
-    /// Row activities at a point, and the size of the largest term of each.
+    /// Row activities at a point, and the size of the largest term of each (of a term for a unit more
+    /// where the attempt forgives).
     fn activities(&self, x: &[f64]) -> Vec<(f64, f64)> {
         let row = |i: usize| {
             self.matrix.row(i).fold((0.0, 0.0), |(sum, size): (f64, f64), (j, value)| {
                 let term = value * x[j as usize];
-                (sum + term, if term.abs() > size { term.abs() } else { size })
+                let own = if self.care.forgives { value.abs() + term.abs() } else { term.abs() };
+                (sum + term, if own > size { own } else { size })
             })
         };
         (0..self.rows()).map(row).collect()
@@ -189,6 +202,15 @@ impl Core {
         })
     }
 
+    /// The solution when the basis is optimal, or why it may not be released. Where solves are
+    /// refined, violations that the check of the rows does not see are noise of the basis.
+    pub(crate) fn released_optimum(&self) -> Option<Result<Solution, String>> {
+        let feasible = self.is_primal_feasible();
+        let optimal = (feasible || self.care.refines) && self.worst_reduced() <= self.room.dual;
+        let released = optimal.then(|| self.solution())?;
+        (feasible || released.is_ok()).then_some(released)
+    }
+
     /// Multipliers in the caller's units.
     pub(crate) fn released_duals(&self, duals: &[f64]) -> Vec<f64> {
         released(duals, &self.unit[self.columns()..], |y, unit| y / unit)
@@ -234,7 +256,8 @@ impl Core {
             (value >= -room || self.lower[j].is_infinite())
                 && (value <= room || self.upper[j].is_infinite())
         };
-        let columns = (0..n).all(|j| recedes(ray[j], 1.0, j));
+        let size = if self.care.forgives { 10.0 } else { 1.0 };
+        let columns = (0..n).all(|j| recedes(ray[j], size, j));
         let rows = self
             .activities(&ray)
             .iter()

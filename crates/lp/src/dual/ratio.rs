@@ -12,7 +12,7 @@
 use crate::basis::Status;
 use crate::sparse::largest;
 use crate::state::Core;
-use crate::tolerances::{HARRIS_DUAL, PRIMAL, ratio_entry};
+use crate::tolerances::{HARRIS_DUAL, PRIMAL};
 use std::ops::Range;
 
 /// What the test says.
@@ -133,7 +133,7 @@ fn list_breakpoints(core: &Core, sign: f64, points: &mut Vec<Breakpoint>) {
             points.push(Breakpoint { variable, alpha: alpha.abs(), slack, range });
         }
     }
-    let least = ratio_entry(largest);
+    let least = core.care.least_entry(largest);
     points.retain(|point| point.alpha > least);
 }
 

@@ -55,11 +55,17 @@ impl Factor {
     /// Factorises the basis with these columns. Dependent columns are replaced by logicals
     /// (−1 in a row), which are returned; the factors are those of the mended basis.
     /// Work: the nonzeros touched, returned second.
-    pub(crate) fn factorise(columns: &BasisColumns, threshold: f64) -> (Self, Vec<Replaced>, u64) {
+    pub(crate) fn factorise(
+        columns: &BasisColumns,
+        threshold: f64,
+        singular: f64,
+    ) -> (Self, Vec<Replaced>, u64) {
         let size = columns.size();
         let mut pivots = Pivots::new(size);
-        let active = singletons::eliminate(columns, &mut pivots);
-        nucleus::eliminate(columns, active, threshold, &mut pivots);
+        let active = singletons::eliminate(columns, singular, &mut pivots);
+        if active {
+            nucleus::eliminate(columns, (threshold, singular), &mut pivots);
+        }
         let replaced = pivots.complete();
         let ticks = pivots.work() + columns.nonzeros() as u64 + size as u64;
         let mut factor = Self {

@@ -10,7 +10,7 @@
 use super::buckets::{Buckets, NONE};
 use super::pivots::{BasisColumns, Pivots};
 use crate::sparse::largest;
-use crate::tolerances::{FACTOR_DROP, MARKOWITZ_CANDIDATES, SINGULAR};
+use crate::tolerances::{FACTOR_DROP, MARKOWITZ_CANDIDATES};
 
 /// A pivot that may be taken, with its Markowitz product.
 #[derive(Clone, Copy, Debug)]
@@ -32,14 +32,16 @@ struct Active {
     seen: Vec<u32>,
     stamp: u32,
     threshold: f64,
+    singular: f64,
 }
 
-/// Eliminates until no entry is large enough to be a pivot.
-pub(crate) fn eliminate(basis: &BasisColumns, anything: bool, threshold: f64, pivots: &mut Pivots) {
-    if !anything {
-        return;
-    }
-    let mut active = Active::new(basis, threshold, pivots);
+/// Eliminates until no entry is as large as `singular`.
+pub(crate) fn eliminate(
+    basis: &BasisColumns,
+    (threshold, singular): (f64, f64),
+    pivots: &mut Pivots,
+) {
+    let mut active = Active::new(basis, (threshold, singular), pivots);
     while let Some(pivot) = active.choose() {
         active.take(pivot, pivots);
     }
@@ -47,7 +49,7 @@ pub(crate) fn eliminate(basis: &BasisColumns, anything: bool, threshold: f64, pi
 
 impl Active {
     /// The open rows and positions of the basis.
-    fn new(basis: &BasisColumns, threshold: f64, pivots: &Pivots) -> Self {
+    fn new(basis: &BasisColumns, (threshold, singular): (f64, f64), pivots: &Pivots) -> Self {
         let size = basis.size();
         let mut active = Self {
             rows: vec![Vec::new(); size],
@@ -59,6 +61,7 @@ impl Active {
             seen: vec![0; size],
             stamp: 0,
             threshold,
+            singular,
         };
         for row in (0..size as u32).rev().filter(|&row| pivots.row_is_open(row)) {
             let open =
@@ -107,7 +110,7 @@ impl Active {
 
     /// True when an entry may be a pivot.
     fn is_eligible(&self, row: u32, value: f64) -> bool {
-        value.abs() >= SINGULAR && value.abs() >= self.threshold * self.largest[row as usize]
+        value.abs() >= self.singular && value.abs() >= self.threshold * self.largest[row as usize]
     }
 
     /// Looks through a column; true when it had a pivot.

@@ -5,20 +5,20 @@
 //! triangular, so little remains.
 
 use super::pivots::{BasisColumns, Pivots};
-use crate::tolerances::SINGULAR;
 
-/// Takes every singleton; returns whether anything is left open.
-pub(crate) fn eliminate(columns: &BasisColumns, pivots: &mut Pivots) -> bool {
+/// Takes every singleton of at least `singular`; returns whether anything is left open.
+pub(crate) fn eliminate(columns: &BasisColumns, singular: f64, pivots: &mut Pivots) -> bool {
     let size = columns.size() as u32;
-    take_columns(columns, size, pivots);
+    take_columns(columns, singular, pivots);
     if pivots.diagonal.len() < size as usize {
-        take_rows(columns, size, pivots);
+        take_rows(columns, singular, pivots);
     }
     pivots.diagonal.len() < size as usize
 }
 
 /// Column singletons, until there are none.
-fn take_columns(columns: &BasisColumns, size: u32, pivots: &mut Pivots) {
+fn take_columns(columns: &BasisColumns, singular: f64, pivots: &mut Pivots) {
+    let size = columns.size() as u32;
     let mut count: Vec<u32> =
         (0..size).map(|position| columns.column(position).len() as u32).collect();
     let mut stack: Vec<u32> =
@@ -26,7 +26,7 @@ fn take_columns(columns: &BasisColumns, size: u32, pivots: &mut Pivots) {
     while let Some(position) = stack.pop() {
         let open =
             columns.column(position).iter().find(|&&(row, _)| pivots.row_is_open(row)).copied();
-        let Some((row, value)) = open.filter(|&(_, value)| value.abs() >= SINGULAR) else {
+        let Some((row, value)) = open.filter(|&(_, value)| value.abs() >= singular) else {
             continue;
         };
         for &(other, entry) in columns.row(row) {
@@ -43,7 +43,8 @@ fn take_columns(columns: &BasisColumns, size: u32, pivots: &mut Pivots) {
 }
 
 /// Row singletons, until there are none.
-fn take_rows(columns: &BasisColumns, size: u32, pivots: &mut Pivots) {
+fn take_rows(columns: &BasisColumns, singular: f64, pivots: &mut Pivots) {
+    let size = columns.size() as u32;
     let open_entries = |row: u32, pivots: &Pivots| {
         columns.row(row).iter().filter(|&&(position, _)| pivots.position_is_open(position)).count()
     };
@@ -57,7 +58,7 @@ fn take_rows(columns: &BasisColumns, size: u32, pivots: &mut Pivots) {
             .iter()
             .find(|&&(position, _)| pivots.position_is_open(position))
             .copied();
-        let Some((position, value)) = open.filter(|&(_, value)| value.abs() >= SINGULAR) else {
+        let Some((position, value)) = open.filter(|&(_, value)| value.abs() >= singular) else {
             continue;
         };
         for &(other, entry) in columns.column(position) {

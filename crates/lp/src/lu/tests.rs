@@ -1,7 +1,6 @@
 //! Solves and updates against the matrix itself, on random bases.
 
 use super::*;
-use crate::tolerances::MARKOWITZ;
 
 /// A small generator of pseudo-random numbers (splitmix64).
 struct Random(u64);
@@ -98,7 +97,7 @@ fn solves_with_random_bases() {
         let size = 1 + random.below(60) as usize;
         let extra = random.below(5);
         let mut columns = random_columns(&mut random, size, extra);
-        let (mut factor, replaced, _) = Factor::factorise(&gather(&columns), MARKOWITZ);
+        let (mut factor, replaced, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
         for r in replaced {
             columns[r.position as usize] = vec![(r.row, -1.0)];
         }
@@ -110,7 +109,7 @@ fn solves_with_random_bases() {
 /// Factors of a random basis, and its columns as they are after dependent ones were replaced.
 fn factorised(random: &mut Random, size: usize, kind: u64) -> (Factor, Columns) {
     let mut columns = basis_of_kind(random, size, kind);
-    let (factor, replaced, _) = Factor::factorise(&gather(&columns), MARKOWITZ);
+    let (factor, replaced, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
     for r in replaced {
         columns[r.position as usize] = vec![(r.row, -1.0)];
     }
@@ -167,7 +166,7 @@ fn solves_after_updates_are_those_of_fresh_factors() {
         let size = 5 + random.below(40) as usize;
         let (mut factor, mut columns) = factorised(&mut random, size, seed % 3);
         updates += exchange_some(&mut factor, &mut columns, &mut random);
-        let (mut fresh, replaced, _) = Factor::factorise(&gather(&columns), MARKOWITZ);
+        let (mut fresh, replaced, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
         assert!(replaced.is_empty() && !factor.is_doubtful, "seed {seed}");
         for step in 0..size as u32 {
             let unit = |k: usize| f64::from(u8::from(k == step as usize));
@@ -192,7 +191,7 @@ fn solves_after_updates_are_those_of_fresh_factors() {
 #[test]
 fn an_update_that_does_not_fit_is_noticed() {
     let columns: Columns = vec![vec![(0, 1.0), (1, 2.0)], vec![(1, 1.0)], vec![(2, 1.0)]];
-    let (mut factor, _, _) = Factor::factorise(&gather(&columns), MARKOWITZ);
+    let (mut factor, _, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
     let mut alpha = vector(&[1.0, 3.0, 1.0]);
     factor.ftran_entering(&mut alpha);
     assert!(!factor.is_worn());
@@ -204,7 +203,7 @@ fn an_update_that_does_not_fit_is_noticed() {
 fn dependent_columns_are_replaced_by_logicals() {
     let columns: Columns =
         vec![vec![(0, 1.0), (1, 2.0)], vec![(0, 2.0), (1, 4.0)], vec![(1, 1.0), (2, 1.0)], vec![]];
-    let (mut factor, replaced, _) = Factor::factorise(&gather(&columns), MARKOWITZ);
+    let (mut factor, replaced, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
     assert_eq!(replaced.len(), 2);
     let mut mended = columns;
     for r in replaced {
@@ -220,7 +219,7 @@ fn sparse_and_full_solves_give_the_same_bits() {
     let mut random = Random(77);
     let size = 400;
     let mut columns = random_columns(&mut random, size, 1);
-    let (mut factor, _, _) = Factor::factorise(&gather(&columns), MARKOWITZ);
+    let (mut factor, _, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
     exchange_some(&mut factor, &mut columns, &mut random);
     let slots = factor.diagonal.len();
     for slot in 0..slots as u32 {

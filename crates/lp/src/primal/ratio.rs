@@ -8,7 +8,7 @@
 //! Source: Harris 1973.
 
 use crate::state::Core;
-use crate::tolerances::{HARRIS_PRIMAL, ratio_entry};
+use crate::tolerances::HARRIS_PRIMAL;
 
 /// What stops the entering variable.
 #[derive(Clone, Copy, Debug)]
@@ -23,7 +23,7 @@ pub(crate) enum Block {
 
 /// Runs the test for the column in `scratch.column`.
 pub(crate) fn block(core: &Core, entering: u32, direction: f64) -> Block {
-    let least = ratio_entry(core.scratch.column.largest());
+    let least = core.care.least_entry(core.scratch.column.largest());
     let mut reach = f64::INFINITY;
     let blocking = || core.scratch.column.iter().filter(|(_, alpha)| alpha.abs() > least);
     for (position, alpha) in blocking() {

@@ -10,6 +10,8 @@
 //! | `limits` | bounds of stopped solves against the optimum |
 //! | `published` | bounds of known formulations on generated instances |
 //! | `metamorphic` | the same problem in other words |
+//! | `numerics` | coefficients of very different size |
+//! | `search` | tableau rows, bases set aside, bounds on the way, condition |
 //! | `edges` | empty, fixed, crossed, free, refused |
 //!
 //! Each outcome is checked by [`shadow::Shadow`], which keeps its own copy of the problem.
@@ -23,9 +25,11 @@ mod families;
 mod instances;
 mod limits;
 mod metamorphic;
+mod numerics;
 mod oracle;
 mod published;
 mod random;
+mod search;
 mod shadow;
 mod slicing;
 mod warm;

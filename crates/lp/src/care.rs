@@ -1,0 +1,63 @@
+//! How careful a solve is, attempt by attempt.
+//!
+//! The first attempt is the fast one. When its outcome does not pass the check, solves are refined
+//! and smaller entries count; then the solve begins again from the slack basis and keeps away from
+//! small pivots, with tighter and with the usual tolerances; last with looser ones.
+
+/// The settings of an attempt.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(crate) struct Care {
+    /// Threshold pivoting: a pivot is at least this share of the largest entry of its row.
+    pub(crate) threshold: f64,
+    /// Pivots of the factorisation below this make the basis singular; absolute.
+    pub(crate) singular: f64,
+    /// Smallest pivot taken with fresh factors; relative to the largest entry of its column, and to
+    /// 1 where that is larger.
+    pub(crate) pivot: f64,
+    /// Entries below this take no part in a ratio test; relative to the largest of them, and to 1
+    /// where that is larger.
+    pub(crate) entry: f64,
+    /// Factor on the tolerances of feasibility.
+    pub(crate) room: f64,
+    /// Whether solves are refined.
+    pub(crate) refines: bool,
+    /// Whether a row may be violated, or a ray leave it, by what the tolerance of a column times its
+    /// coefficient makes, not only by what the terms of the row make.
+    pub(crate) forgives: bool,
+}
+
+/// The first attempt.
+const FAST: Care = Care {
+    threshold: 0.1,
+    singular: 1e-12,
+    pivot: 1e-11,
+    entry: 1e-9,
+    room: 1.0,
+    refines: false,
+    forgives: false,
+};
+
+/// The attempts from the slack basis.
+const WARY: Care = Care { threshold: 0.5, singular: 1e-9, pivot: 1e-7, refines: true, ..FAST };
+
+/// The attempts in turn. Two have tight tolerances, for points that are feasible within the usual
+/// ones and are not once they are put within their bounds: large coefficients multiply the
+/// difference.
+pub(crate) const ATTEMPTS: [Care; 6] = [
+    FAST,
+    Care { threshold: 0.3, entry: 1e-12, refines: true, ..FAST },
+    Care { threshold: 0.3, entry: 1e-12, room: 1e-3, refines: true, ..FAST },
+    Care { room: 1e-3, ..WARY },
+    Care { threshold: 0.9, entry: 1e-8, forgives: true, ..WARY },
+    Care { threshold: 0.9, entry: 1e-8, room: 100.0, forgives: true, ..WARY },
+];
+
+/// The attempt that begins from the slack basis.
+pub(crate) const FROM_SLACK: usize = 3;
+
+impl Care {
+    /// The smallest entry of a ratio test when this is the largest.
+    pub(crate) fn least_entry(&self, largest: f64) -> f64 {
+        if largest < 1.0 { self.entry * largest } else { self.entry }
+    }
+}

@@ -77,6 +77,18 @@ impl Basis {
         column < self.columns && self.status(column as usize) == Status::Basic
     }
 
+    /// True when a column is out of the basis at its upper bound.
+    #[must_use]
+    pub fn is_upper_column(&self, column: u32) -> bool {
+        column < self.columns && self.status(column as usize) == Status::Upper
+    }
+
+    /// True when a row is held at its upper side.
+    #[must_use]
+    pub fn is_upper_row(&self, row: u32) -> bool {
+        row < self.rows && self.status((self.columns + row) as usize) == Status::Upper
+    }
+
     /// True when the logical of a row is basic: the row is not active.
     #[must_use]
     pub fn is_basic_row(&self, row: u32) -> bool {
@@ -114,5 +126,6 @@ mod tests {
         assert_eq!((basis.column_count(), basis.row_count(), basis.packed.len()), (4, 3, 2));
         assert!((0..7).all(|i| basis.status(i) == all[i]));
         assert!(basis.is_basic_column(1) && basis.is_basic_row(1) && !basis.is_basic_column(5));
+        assert!(basis.is_upper_column(0) && basis.is_upper_row(0) && !basis.is_upper_column(4));
     }
 }

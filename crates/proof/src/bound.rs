@@ -1,6 +1,6 @@
 //! Proved bounds and proofs that there is no point.
 
-use model::{Number, Sense};
+use model::Number;
 
 use crate::kernel::{Objective, Sides, Sum, sum};
 use crate::mend::mended;
@@ -21,10 +21,7 @@ use crate::rows::{Bounds, ExactRows};
 #[must_use]
 pub fn bound(rows: &ExactRows, bounds: &[Bounds], multipliers: &[f64]) -> Option<Number> {
     let value = values(rows, Objective::Costs, bounds, multipliers).max()?;
-    Some(match rows.sense {
-        Sense::Minimise => value + &rows.offset,
-        Sense::Maximise => &rows.offset - value,
-    })
+    Some(rows.as_given(value))
 }
 
 /// Whether the ray proves that no point meets the rows and `bounds`: with y the ray, the
@@ -65,7 +62,7 @@ fn values<'a>(
 
 /// The sum, with the columns that make it −∞ dealt with: by other multipliers, and by
 /// bounds that follow from the rows of the model; the better of the two.
-fn closed(
+pub(crate) fn closed(
     rows: &ExactRows,
     objective: Objective,
     bounds: &[Bounds],

@@ -16,21 +16,36 @@
 //! | [`ExactRows`] | the rows of a relaxation, kept over many nodes |
 //! | [`bound()`] | a proved bound from the multipliers of a relaxation |
 //! | [`infeasible`] | whether a ray proves that a relaxation has no point |
+//! | [`Certifier`] | the exact optimum of a relaxation, or an exact ray, from its final basis |
 //! | [`Point`], [`violations`] | a point against every written row and bound |
 //!
+//! A certifier solves the systems of the basis p-adically and asks its caller, who has a
+//! floating-point kernel, for the solution of residual problems where the basis is slightly wrong.
+//!
 //! Sources: Neumaier, Shcherbina 2004 (safe bounds); Cook, Koch, Steffy, Wolter 2013 (mending
-//! multipliers exactly); Farkas 1902.
+//! multipliers exactly); Dixon 1982 (p-adic lifting); Wang 1981 (fractions from residues);
+//! Gleixner, Steffy, Wolter 2016 (iterative refinement); Farkas 1902.
 
+mod basis;
 mod bound;
+mod certify;
 mod implied;
 mod kernel;
+mod lifting;
+
 mod mend;
 mod multipliers;
 mod point;
+mod ray;
+mod refine;
 mod rows;
 #[cfg(test)]
 mod tests;
+mod vertex;
 
+pub use basis::{Standing, Standings};
 pub use bound::{bound, infeasible};
+pub use certify::{Budget, Certifier, ExactMultipliers, Progress, Wish};
 pub use point::{Place, Point, Violation, violations};
+pub use refine::Residual;
 pub use rows::{Bounds, ExactRows};

@@ -33,6 +33,14 @@ pub(crate) struct Multipliers {
     pub(crate) denominator: UBig,
 }
 
+impl Multipliers {
+    /// The same with every sign turned.
+    pub(crate) fn negated(&self) -> Self {
+        let values = self.values.iter().map(|value| -value).collect();
+        Self { values, denominator: self.denominator.clone() }
+    }
+}
+
 /// The multipliers on a dyadic grid; `None` where one is not finite.
 pub(crate) fn on_grid(rows: &ExactRows, objective: Objective, y: &[f64]) -> Option<Multipliers> {
     let scale = objective_scale(rows, objective);

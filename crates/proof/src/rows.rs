@@ -124,6 +124,19 @@ impl ExactRows {
         self.costs.len()
     }
 
+    /// The non-zeros of all rows.
+    pub(crate) fn nonzeros(&self) -> usize {
+        self.columns.len()
+    }
+
+    /// A value to be minimised, without offset, as the model gives values.
+    pub(crate) fn as_given(&self, value: Number) -> Number {
+        match self.sense {
+            Sense::Minimise => value + &self.offset,
+            Sense::Maximise => &self.offset - value,
+        }
+    }
+
     /// The columns of a row with their scaled coefficients.
     pub(crate) fn entries(&self, row: usize) -> (&[u32], Coefficients<'_>) {
         let range = self.rows[row].start..self.rows[row].end;

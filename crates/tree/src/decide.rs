@@ -24,9 +24,15 @@ impl Search {
     /// The node in hand is solved and its candidates are tried: close it or branch.
     pub(crate) fn decide(&mut self) -> Option<Progress> {
         self.job = Job::None;
+        if self.prove_root() {
+            return None;
+        }
         let mut hand = self.hand.take()?;
         let point = hand.point.as_ref()?;
-        hand.proved = self.relaxation.as_ref()?.prove(&point.duals);
+        if !hand.exact {
+            let cheap = self.relaxation.as_ref()?.prove(&point.duals);
+            hand.proved = self.better(hand.proved.take(), cheap);
+        }
         let closed = self.closed(&hand, point);
         let choice = if closed { None } else { self.choice(hand.node, &point.x) };
         let state = match (closed, choice, hand.accepted) {
@@ -140,10 +146,14 @@ impl Search {
         let own = proved.map(|bound| signed(&self.model, bound.clone()));
         let checked = self.target.proves_float(self.tree.node(node).proved)
             || own.is_some_and(|bound| self.target.proves(&bound));
-        self.count(checked);
+        if checked {
+            self.count(true);
+        } else {
+            self.doubtful.push(node);
+        }
     }
 
-    fn count(&mut self, checked: bool) {
+    pub(crate) fn count(&mut self, checked: bool) {
         let counter = if checked {
             &mut self.ledger.leaves_checked
         } else {
@@ -154,15 +164,23 @@ impl Search {
 
     /// The node in hand has no point, as `ray` says.
     pub(crate) fn infeasible(&mut self, ray: &[f64]) -> Option<Progress> {
+        let refuted = self.hand.as_ref()?.exact;
+        let checked = refuted || self.relaxation.as_ref()?.refutes(ray);
+        if !checked && self.refute_root(ray) {
+            return None;
+        }
         let hand = self.hand.take()?;
         let relaxation = self.relaxation.as_ref()?;
-        let checked = relaxation.refutes(ray);
         let node = self.tree.node_mut(hand.node);
         node.state = NodeState::Infeasible;
         node.rows = u32::try_from(relaxation.row_count()).unwrap_or(u32::MAX);
         node.basis = Some(Box::new(relaxation.simplex.basis()));
         self.ledger.ticks += ray.len() as u64;
-        self.count(checked);
+        if checked || hand.node == NodeId::ROOT {
+            self.count(checked);
+        } else {
+            self.doubtful.push(hand.node);
+        }
         self.close_without_bound(&hand, NodeState::Infeasible);
         if hand.node == NodeId::ROOT {
             return self.root_infeasible(&hand, ray, checked);

@@ -13,7 +13,7 @@ use lp::{Basis, Col, NewRow, Problem, ProblemError, Simplex};
 use model::{
     ColumnId, FamilyState, LabelId, Model, Number, Row, RowId, Sense, SubsetFamilyId, nearest_f64,
 };
-use proof::ExactRows;
+use proof::{ExactRows, Residual};
 
 use crate::event::{Branch, Side};
 
@@ -175,6 +175,11 @@ impl Relaxation {
 
     /// The bound that multipliers prove on the node at the end of `path`.
     pub(crate) fn prove_at(&self, path: &[Branch], duals: &[f64]) -> Option<Number> {
+        proof::bound(&self.exact, &self.bounds_at(path), duals)
+    }
+
+    /// The exact bounds of the node at the end of `path`. `O(columns)`.
+    pub(crate) fn bounds_at(&self, path: &[Branch]) -> Vec<proof::Bounds> {
         let columns = (0..self.bounds.len()).map(ColumnId::from_index);
         let mut bounds: Vec<proof::Bounds> =
             columns.map(|column| model_bounds(&self.model, column)).collect();
@@ -183,7 +188,23 @@ impl Relaxation {
             let side = if branch.side == Side::AtMost { upper } else { lower };
             *side = Number::try_from(branch.bound).ok();
         }
-        proof::bound(&self.exact, &bounds, duals)
+        bounds
+    }
+
+    /// The rows in exact arithmetic.
+    pub(crate) fn exact(&self) -> &ExactRows {
+        &self.exact
+    }
+
+    /// A residual problem: the rows and columns of the relaxation, other costs, bounds and sides.
+    ///
+    /// # Errors
+    /// Where the kernel refuses it.
+    pub(crate) fn residual(&self, residual: &Residual) -> Result<Problem, ProblemError> {
+        let rows = (0..self.model.row_count()).map(RowId::from_index);
+        let rows = rows.filter(|&row| self.model.row_is_in(row));
+        let written = rows.map(|row| float_entries(&self.model, row));
+        residual_problem(residual, written.chain(self.added.iter().map(|r| r.entries.clone())))
     }
 
     /// Whether a ray proves that the node in hand has no point.
@@ -230,13 +251,33 @@ pub(crate) fn problem(
     let float =
         |id: Option<model::NumberId>, none: f64| id.map_or(none, |n| model.numbers().float(n));
     for row in (0..model.row_count()).map(RowId::from_index).filter(|&row| wanted(row)) {
-        let entries: Vec<(Col, f64)> = model
-            .row_entries(row)
-            .iter()
-            .map(|&(c, a)| (Col(c.0), model.numbers().float(a)))
-            .collect();
+        let entries = float_entries(model, row);
         let (lower, upper) = model.row_sides(row);
         problem.add_row(&entries, float(lower, f64::NEG_INFINITY), float(upper, f64::INFINITY))?;
+    }
+    Ok(problem)
+}
+
+/// The coefficients of a written row as floats.
+pub(crate) fn float_entries(model: &Model, row: RowId) -> Vec<(Col, f64)> {
+    let entries = model.row_entries(row).iter();
+    entries.map(|&(c, a)| (Col(c.0), model.numbers().float(a))).collect()
+}
+
+/// A residual problem over these rows.
+///
+/// # Errors
+/// Where the kernel refuses it.
+pub(crate) fn residual_problem(
+    residual: &Residual,
+    rows: impl Iterator<Item = Vec<(Col, f64)>>,
+) -> Result<Problem, ProblemError> {
+    let mut problem = Problem::new();
+    for (&cost, &(lower, upper)) in residual.costs.iter().zip(&residual.bounds) {
+        problem.add_column(cost, lower, upper)?;
+    }
+    for (entries, &(lower, upper)) in rows.zip(&residual.sides) {
+        problem.add_row(&entries, lower, upper)?;
     }
     Ok(problem)
 }

@@ -34,6 +34,9 @@ pub struct RootResult {
     pub checked_bound: Option<Number>,
     /// Whether the bound or the infeasibility was proved in exact arithmetic.
     pub checked: bool,
+    /// Whether the checked bound is the exact optimum of the relaxation. Else the true optimum
+    /// is between it and `bound`, up to the rounding of the latter.
+    pub exact: bool,
     /// Simplex iterations.
     pub iterations: u64,
     /// Whole columns with a fractional value.
@@ -59,6 +62,7 @@ impl Search {
             bound: None,
             checked_bound: None,
             checked: false,
+            exact: false,
             iterations: self.relaxation.as_ref().map_or(0, |r| r.simplex.stats().iterations),
             fractional: 0,
             rounds: hand.map_or(0, |hand| hand.rounds),
@@ -77,6 +81,7 @@ impl Search {
         result.bound = Some(self.user(point.bound));
         result.checked_bound = hand.proved;
         result.checked = result.checked_bound.is_some();
+        result.exact = hand.exact;
         result.fractional = self.chooser.fractional(&point.x);
         let direction = direction(&self.model);
         result.reduced_costs = point.reduced_costs.iter().map(|d| direction * d + 0.0).collect();

@@ -14,7 +14,9 @@ use crate::branching::{Choice, Chooser};
 use crate::event::{Event, NodeId, Origin};
 use crate::node::Tree;
 use crate::open::Open;
+use crate::proofs::{Doubtful, Proof};
 use crate::propose::Roundings;
+use crate::proving::Proving;
 use crate::relaxation::{Relaxation, direction};
 use crate::root::RootResult;
 use crate::round_trip::RoundTrip;
@@ -76,6 +78,7 @@ pub(crate) enum Job {
     Separate,
     Complete(Purpose),
     Tour(Box<TourSearch>),
+    Prove(Box<Proving>, Proof),
 }
 
 /// Where a candidate for a solution comes from.
@@ -125,8 +128,12 @@ pub(crate) struct Hand {
     /// The internal value of its relaxation's point, where that is a solution.
     pub(crate) accepted: Option<f64>,
     pub(crate) point: Option<PointInHand>,
-    /// The bound that its multipliers prove, in the direction of the objective.
+    /// The bound that is proved for it, in the direction of the objective.
     pub(crate) proved: Option<Number>,
+    /// Whether that is the exact optimum of its relaxation.
+    pub(crate) exact: bool,
+    /// Whether a proof from its basis was tried.
+    pub(crate) tried: bool,
 }
 
 /// The best solution.
@@ -183,6 +190,7 @@ pub struct Search {
     pub(crate) acts: Acts,
     pub(crate) roundings: Roundings,
     pub(crate) ledger: Ledger,
+    pub(crate) doubtful: Doubtful,
     pub(crate) events: Vec<Event>,
 }
 
@@ -216,6 +224,7 @@ impl Search {
             acts: Acts::default(),
             roundings: Roundings::default(),
             ledger: Ledger::default(),
+            doubtful: Doubtful::default(),
             events: vec![Event::Created { node: NodeId::ROOT, parent: None, branching: None }],
             relaxation: None,
             model,
@@ -312,9 +321,13 @@ impl Search {
     pub fn work(&self) -> Work {
         let stats = self.relaxation.as_ref().map(|relaxation| relaxation.simplex.stats());
         let (ticks, iterations) = stats.map_or((0, 0), |stats| (stats.ticks, stats.iterations));
-        let tour = if let Job::Tour(tour) = &self.job { tour.ticks() } else { 0 };
+        let job = match &self.job {
+            Job::Tour(tour) => tour.ticks(),
+            Job::Prove(proving, _) => proving.ticks(),
+            _ => 0,
+        };
         Work {
-            ticks: self.ledger.ticks + ticks + self.rounds.ticks() + self.checker.ticks() + tour,
+            ticks: self.ledger.ticks + ticks + self.rounds.ticks() + self.checker.ticks() + job,
             iterations: iterations + self.checker.iterations(),
             doing: self.doing(),
         }
@@ -329,6 +342,7 @@ impl Search {
             (Job::Separate, _) => "separating",
             (Job::Complete(_), _) => "completing a solution",
             (Job::Tour(_), _) => "looking for a round trip",
+            (Job::Prove(..), _) => "proving a bound",
             (Job::None, _) => "choosing",
         }
     }
@@ -342,9 +356,12 @@ impl Search {
         if ending == Ending::Complete {
             self.settle();
         }
-        if let Job::Tour(tour) = &self.job {
-            self.ledger.ticks += tour.ticks();
-        }
+        self.ledger.ticks += match &self.job {
+            Job::Tour(tour) => tour.ticks(),
+            Job::Prove(proving, _) => proving.ticks(),
+            _ => 0,
+        };
+        self.give_up_proofs();
         self.job = Job::None;
         self.state = State::Finished(ending);
         self.acts.refuse_all(self.ledger.nodes);

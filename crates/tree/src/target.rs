@@ -76,6 +76,11 @@ impl Target {
         }
     }
 
+    /// The value that a proved bound must reach, where reaching it is enough; internal.
+    pub(crate) fn goal(&self) -> Option<&Number> {
+        self.best.as_ref().filter(|_| self.improving.is_none())
+    }
+
     /// The same for a bound that is kept as a float on the safe side.
     pub(crate) fn proves_float(&self, proved: f64) -> bool {
         Number::try_from(proved).is_ok_and(|proved| self.proves(&proved))

@@ -49,6 +49,15 @@ impl Search {
                 }
                 None
             }
+            Job::Prove(proving, _) => {
+                let relaxation = self.relaxation.as_ref()?;
+                let problem = |residual: &proof::Residual| relaxation.residual(residual).ok();
+                if proving.advance(relaxation.exact(), problem, ticks) {
+                    self.proved()
+                } else {
+                    None
+                }
+            }
         }
     }
 
@@ -88,6 +97,12 @@ impl Search {
             return Some(Progress::Finished);
         }
         if self.open.len() == 0 {
+            self.settle();
+        }
+        if self.prove_doubtful() {
+            return None;
+        }
+        if self.open.len() == 0 {
             self.end(Ending::Complete);
             return Some(Progress::Finished);
         }
@@ -122,6 +137,8 @@ impl Search {
             accepted: None,
             point: None,
             proved: None,
+            exact: false,
+            tried: false,
         });
         self.solve()
     }

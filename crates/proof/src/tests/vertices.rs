@@ -3,7 +3,9 @@
 use model::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
 use proptest::prelude::*;
 
-use crate::{Bounds, ExactRows, bound, infeasible};
+use crate::{
+    Bounds, Budget, Certifier, ExactRows, Progress, Standing, Standings, Wish, bound, infeasible,
+};
 
 /// min c'x, L ≤ Ax ≤ U, l ≤ x ≤ u in small whole numbers; sides may be missing.
 #[derive(Debug, Clone)]
@@ -198,4 +200,75 @@ fn a_box_that_is_too_small() {
     program.rows[0].1 = Some(6);
     let model = program.model(Sense::Minimise);
     assert!(!infeasible(&ExactRows::new(&model), &bounds(&model), &[1.0]));
+}
+
+/// Every choice of as many basic variables as there are rows, with every choice of sides for the
+/// others.
+fn bases(program: &Program) -> Vec<Standings> {
+    let (columns, rows) = (program.costs.len(), program.rows.len());
+    let all = columns + rows;
+    let mut out = Vec::new();
+    for set in (0_u32..1 << all).filter(|set| set.count_ones() as usize == rows) {
+        for sides in (0_u32..1 << all).filter(|sides| sides & set == 0) {
+            let standing = |at: usize| match (set >> at & 1, sides >> at & 1) {
+                (1, _) => Standing::Basic,
+                (_, 1) => Standing::Upper,
+                _ => Standing::Lower,
+            };
+            out.push(Standings {
+                columns: (0..columns).map(standing).collect(),
+                rows: (columns..all).map(standing).collect(),
+            });
+        }
+    }
+    out
+}
+
+/// A certifier to its end, in the smallest slices, without a kernel for residual problems.
+fn certified(rows: &ExactRows, bounds: &[Bounds], basis: Standings, wish: Wish) -> Certifier {
+    let mut certifier = Certifier::new(bounds.to_vec(), basis, wish, Budget::default());
+    loop {
+        match certifier.advance(rows, 1) {
+            Progress::Working => {}
+            Progress::Asks => certifier.answer(None),
+            Progress::Done => return certifier,
+        }
+    }
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig::with_cases(60))]
+
+    /// Whatever the basis, right or wrong: no bound is over the optimum, what is called exact is
+    /// the optimum at a feasible point, nothing that has a point is refuted. Within bounds some
+    /// basis gives the exact optimum, or proves that there is no point.
+    #[test]
+    fn every_basis_proves_the_truth_or_less(program in program(), maximise in any::<bool>()) {
+        let least = program.vertices().iter().map(|(x, _)| product(&program.costs, x)).min();
+        let sense = if maximise { Sense::Maximise } else { Sense::Minimise };
+        let model = program.model(sense);
+        let (rows, all) = (ExactRows::new(&model), bounds(&model));
+        let sign = Number::from(if maximise { -1 } else { 1 });
+        let (mut exact, mut refuted) = (0, 0);
+        for basis in bases(&program) {
+            let found = certified(&rows, &all, basis.clone(), Wish::Optimum(None));
+            let bound = found.bound(&rows).map(|bound| bound * &sign);
+            if let Some(least) = &least {
+                prop_assert!(bound.as_ref().is_none_or(|bound| bound <= least));
+            }
+            if found.is_exact() {
+                exact += 1;
+                let x = found.point().unwrap();
+                prop_assert!(program.holds(&x));
+                prop_assert_eq!(bound.clone(), Some(product(&program.costs, &x)));
+                prop_assert_eq!(bound, least.clone());
+            }
+            refuted += u32::from(certified(&rows, &all, basis, Wish::Refutation).is_refuted());
+        }
+        prop_assert!(refuted == 0 || least.is_none());
+        if program.bounds.iter().all(|(_, upper)| upper.is_some()) {
+            prop_assert!(exact > 0 || least.is_none(), "no basis proves the optimum");
+            prop_assert!(refuted > 0 || least.is_some(), "no basis refutes");
+        }
+    }
 }

@@ -1,7 +1,7 @@
 "use strict";
-// Opens the page out of its own file: page module, engine module and the worker's script stand in
-// it packed into one. The engine is compiled once here; the page posts the compiled module to each
-// of its workers.
+// Opens the page out of its own file: page module, engine module, the second LP code's module and
+// the workers' scripts stand in it packed into one. Each is compiled once here; the page posts the
+// compiled modules to its workers.
 (async () => {
   const notice = document.getElementById("boot");
 
@@ -21,15 +21,17 @@
   }
 
   try {
-    const [pageBytes, engineBytes, script] = unpack();
-    const [page, engine] = await Promise.all([
-      WebAssembly.compile(pageBytes),
-      WebAssembly.compile(engineBytes),
-    ]);
-    const blob = new Blob([script], { type: "text/javascript" });
+    const [pageBytes, engineBytes, engineScript, opinionBytes, opinionScript] = unpack();
+    const [page, engine, opinion] = await Promise.all(
+      [pageBytes, engineBytes, opinionBytes].map((bytes) => WebAssembly.compile(bytes)),
+    );
+    const address = (script) =>
+      URL.createObjectURL(new Blob([script], { type: "text/javascript" }));
     globalThis.hullward = Object.freeze({
       engineModule: engine,
-      workerUrl: URL.createObjectURL(blob),
+      workerUrl: address(engineScript),
+      opinionModule: opinion,
+      opinionUrl: address(opinionScript),
     });
     await wasm_bindgen({ module_or_path: page });
     notice.remove();

@@ -12,8 +12,9 @@ const lengths = found[1].split(",").map(Number);
 
 vm.runInThisContext(readFileSync(join(__dirname, "../unpack.js"), "utf8"));
 const unpacked = unpackLzma(new Uint8Array(Buffer.from(found[2], "base64")));
-const engine = unpacked.subarray(lengths[0], lengths[0] + lengths[1]);
-const script = unpacked.subarray(lengths[0] + lengths[1]);
+const [, from, to, end] = lengths.reduce((ends, length) => [...ends, ends.at(-1) + length], [0]);
+const engine = unpacked.subarray(from, to);
+const script = unpacked.subarray(to, end);
 
 vm.runInThisContext(Buffer.from(script).toString("utf8"));
 globalThis.hullwardModule = new WebAssembly.Module(engine);

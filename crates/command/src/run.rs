@@ -13,6 +13,7 @@ use crate::complain::complain;
 use crate::ending::Ending;
 use crate::options::RunOptions;
 use crate::progress::Line;
+use crate::second::add_opinion;
 use crate::source::{self, Source};
 use crate::table;
 use crate::verify::verify;
@@ -105,9 +106,11 @@ impl Job<'_> {
         place: (usize, usize),
         err: &mut dyn Write,
     ) -> Result<(RivalResult, Ending)> {
-        let (run, timing) = timed(scenario, place);
+        let clock = Clock::start();
+        let (run, timing) = timed(scenario, place, &clock);
         let mut one = result(scenario, place, &run);
         one.timing = Some(timing);
+        add_opinion(&mut one, &run, scenario.run.seconds, &clock);
         if run.stopped {
             say_the_time(&mut one, scenario.run.seconds);
         }
@@ -160,15 +163,14 @@ impl Job<'_> {
 }
 
 /// Runs one rival with a look at the clock between slices.
-fn timed(scenario: &Scenario, place: (usize, usize)) -> (RivalRun, Timing) {
-    let clock = Clock::start();
+fn timed(scenario: &Scenario, place: (usize, usize), clock: &Clock) -> (RivalRun, Timing) {
     let mut root_ms = None;
     let mut line = Line::new();
     let run = run_rival(scenario, place, USUAL_SLICE, &mut |moment| {
         if moment.phase == Phase::Search && root_ms.is_none() {
             root_ms = Some(clock.milliseconds());
         }
-        line.show(&letter(place.1), &moment, &clock);
+        line.show(&letter(place.1), &moment, clock);
         if clock.is_over(scenario.run.seconds) { Watch::Stop } else { Watch::GoOn }
     });
     line.wipe();

@@ -12,6 +12,9 @@ const CAUTION: &str = "\
 A plan that comes out of a model is a decision aid; driving, working-time, energy and
 safety rules of the place, and the people licensed to apply them, come first.";
 
+/// What the marks beside a root bound mean.
+const LEGEND: &str = "✓ checked in exact arithmetic, = a second LP code agrees, ≠ it does not";
+
 /// Longer fractions are no news to a reader; they stand in the JSON.
 const LONGEST_FRACTION: usize = 16;
 
@@ -63,6 +66,9 @@ pub(crate) fn print(
             writeln!(out, "{}: {sentence}", one.rival)?;
         }
     }
+    if results.iter().any(|one| one.second.is_some()) {
+        writeln!(out, "{LEGEND}")?;
+    }
     if whole {
         compare(scenario, results, out)?;
     }
@@ -97,13 +103,18 @@ fn cells(one: &RivalResult) -> Vec<String> {
     let incumbent = search.and_then(|search| search.incumbent);
     let size = |value: u64| if one.columns == 0 { String::new() } else { count(value) };
     let number = |value: Option<f64>| value.map_or_else(|| "–".to_owned(), short);
+    let second = match one.second.as_ref().and_then(|second| second.agrees) {
+        Some(true) => " =",
+        Some(false) => " ≠",
+        None => "",
+    };
     let root_checked = if root.is_some_and(|root| root.checked) { " ✓" } else { "" };
     vec![
         one.rival.clone(),
         one.title.clone(),
         size(u64::from(one.rows)),
         size(u64::from(one.columns)),
-        format!("{}{root_checked}", number(bound)),
+        format!("{}{root_checked}{second}", number(bound)),
         gap(incumbent, bound),
         number(search.and_then(|search| search.bound)),
         number(incumbent),
@@ -153,6 +164,8 @@ fn notes(one: &RivalResult) -> Vec<String> {
     {
         notes.push(format!("root bound proved: {exact}"));
     }
+    let silent_or_not = one.second.as_ref().filter(|second| second.agrees != Some(true));
+    notes.extend(silent_or_not.map(|second| second.words.clone()));
     let separated = one.families.iter().filter(|family| !family.separation.is_empty());
     notes.extend(separated.map(|family| {
         let (name, how) = (&family.name, &family.separation);

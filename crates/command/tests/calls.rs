@@ -82,6 +82,11 @@ fn two_rivals_agree_and_every_field_is_there() {
         assert_eq!(object["root"]["checked"], true);
         assert!(object["root"]["bound"].as_f64().is_some_and(|bound| bound <= 15.0));
         assert!(object["root"]["checked_bound"].is_string());
+        let (ours, second) = (&object["root"]["bound"], &object["root"]["second_opinion"]);
+        let near = ours.as_f64().zip(second.as_f64()).map(|(a, b)| (a - b).abs() < 1e-7);
+        assert_eq!(near, Some(true), "{ours} and {second}");
+        assert_eq!(object["second"]["agrees"], true);
+        assert_eq!(object["second"]["status"], "optimal");
         let search = &object["search"];
         assert_eq!(search["status"], "optimal");
         assert_eq!(
@@ -131,6 +136,8 @@ fn the_table_names_rivals_and_ends_with_the_caution() {
         "A  Position labels",
         "B  Subtours",
         "optimal ✓",
+        " ✓ =",
+        "= a second LP code agrees",
         "decision aid",
     ] {
         assert!(table.contains(word), "{word}:\n{table}");

@@ -94,6 +94,7 @@ impl Lane {
             Request::Stop => self.stop(outbox),
             Request::Inspect(node) => self.inspect(NodeId(node.0), outbox),
             Request::Act(act) => self.steer(act, outbox),
+            Request::Relaxation => self.hand_over_root(outbox),
             _ => {}
         }
     }
@@ -295,6 +296,17 @@ impl Lane {
             }
             over @ Stage::Over(_) => over,
         };
+    }
+
+    fn hand_over_root(&self, outbox: &mut Outbox) {
+        let relaxation = match &self.stage {
+            Stage::Root(solver)
+            | Stage::Waiting(solver)
+            | Stage::Running(solver)
+            | Stage::Over(Some(solver)) => map::relaxation(&solver.model, &solver.search),
+            _ => Err("the root is not solved".to_owned()),
+        };
+        outbox.push(self.job.run, Reply::Relaxation(relaxation));
     }
 
     fn inspect(&mut self, node: NodeId, outbox: &mut Outbox) {

@@ -57,6 +57,8 @@ pub struct RivalRun {
     pub search: Option<SearchReport>,
     /// Why there is no result.
     pub error: Option<ErrorReport>,
+    /// Its root's relaxation for a second LP code, as bytes, or why it is not handed over.
+    pub relaxation: Option<Result<Vec<u8>, String>>,
     /// Everything that happened.
     pub events: Vec<Event>,
     /// Acts by hand that the scenario holds and that did not apply, one sentence each.
@@ -90,6 +92,10 @@ pub fn run_rival(
         drive.worker.handle(Request::Run { nodes: None });
     }
     drive.finish(slice, watch);
+    if drive.run.root.is_some() {
+        drive.worker.handle(Request::Relaxation);
+        drive.finish(slice, watch);
+    }
     drive.run
 }
 
@@ -232,6 +238,7 @@ impl Drive {
                 Reply::Batch(events) => self.note(events),
                 Reply::Paused(report) | Reply::Done(report) => self.run.search = Some(*report),
                 Reply::Failed(error) => self.run.error = Some(error),
+                Reply::Relaxation(relaxation) => self.run.relaxation = Some(relaxation),
                 Reply::Acted(acted) => self.run.refused.extend(refusal(&acted)),
                 Reply::Ready { .. }
                 | Reply::InstanceRead(_)

@@ -98,6 +98,7 @@ impl Worker {
             | Request::Pause
             | Request::Stop
             | Request::Inspect(_)
+            | Request::Relaxation
             | Request::Act(_) => match &mut self.lane {
                 Some(lane) => lane.act(&request, &mut self.outbox),
                 None => self.reply(Reply::Failed(fault("message", "no rival is loaded"))),

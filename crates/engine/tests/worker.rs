@@ -4,12 +4,13 @@
 
 use hullward_engine as engine;
 use hullward_engine::Worker;
+use hullward_engine::native::{Watch, run_rival};
 use record::event::{Event, NodeNumber};
 use record::file;
 use record::message::{Envelope, LaneJob, Picture, Reply, Request, RunNumber};
 use record::results::{ErrorReport, Status};
 use record::scenario::{FamilyState, InstanceText, Rival, Run};
-use record::wire::{read_envelope, write_request};
+use record::wire::{read_envelope, read_relaxation, write_request};
 
 const MATRIX: &str = "\
 \tAsh\tBirch\tCedar\tElm\tFir
@@ -284,4 +285,36 @@ fn the_catalogue_is_listed_and_each_of_its_rivals_loads() {
         let root = replies.iter().any(|reply| matches!(reply, Reply::Root(_)));
         assert!(root, "{}: {replies:?}", entry.id);
     }
+}
+
+#[test]
+fn a_root_is_handed_over_with_the_rows_that_separation_added_to_it() {
+    let text = include_str!("scenarios/subtours.toml");
+    let scenario = file::parse(text).scenario.expect("a scenario");
+    let handed_over = |search: bool| {
+        let mut scenario = scenario.clone();
+        scenario.run.search = search;
+        let run = run_rival(&scenario, (0, 0), 5_000, &mut |_| Watch::GoOn);
+        let bytes = run.relaxation.expect("asked for").expect("the root is solved");
+        (run.root.expect("a root"), read_relaxation(&bytes).expect("bytes"))
+    };
+    let (root, relaxation) = handed_over(false);
+    assert!(root.added > 0);
+    assert_eq!(relaxation.columns.len(), 182);
+    assert_eq!(relaxation.rows.len(), 28 + root.added as usize);
+    // The rows that the search adds later are not the root's.
+    assert_eq!(handed_over(true).1, relaxation);
+}
+
+#[test]
+fn what_is_not_solved_is_not_handed_over() {
+    let mut worker = Worker::new();
+    worker.handle(load(job("atsp/labels")));
+    worker.handle(Request::Relaxation);
+    worker.handle(Request::Stop);
+    let said = replies(&mut worker, Vec::new()).into_iter().find_map(|reply| match reply {
+        Reply::Relaxation(said) => Some(said),
+        _ => None,
+    });
+    assert_eq!(said, Some(Err("the root is not solved".to_owned())));
 }

@@ -9,6 +9,7 @@
 //! | [`event`] | what a search reports as it goes |
 //! | [`log`] | the saved log (version 1) and its digest |
 //! | [`message`] | [`message::Request`] and [`message::Reply`] |
+//! | [`opinion`] | the relaxation that a second LP code is asked about, and its answer |
 //! | [`wire`] | messages as bytes |
 //! | [`results`] | the JSON objects of `hullward run --json`, and their digest |
 //! | [`place`] | byte spans to line, column and UTF-16 units |
@@ -23,6 +24,7 @@ pub mod hash;
 pub mod link;
 pub mod log;
 pub mod message;
+pub mod opinion;
 pub mod place;
 pub mod results;
 pub mod scenario;

@@ -35,6 +35,9 @@ pub enum Request {
     Stop,
     /// Show a node. Answered by [`Reply::Node`].
     Inspect(NodeNumber),
+    /// Hand over the relaxation that the root's bound comes from. Answered by
+    /// [`Reply::Relaxation`].
+    Relaxation,
     /// Steer the search by hand, as soon as no node is in hand; what the act says of nodes
     /// solved before it is not looked at. Answered by [`Reply::Acted`], and by
     /// [`Reply::Paused`] or [`Reply::Done`] where the search stood still.
@@ -106,6 +109,9 @@ pub enum Reply {
     Done(Box<SearchReport>),
     /// A node in full.
     Node(Box<NodeDetail>),
+    /// The root's relaxation as the bytes of [`crate::wire`], or why it is not handed over, as a
+    /// clause.
+    Relaxation(Result<Vec<u8>, String>),
     /// What became of an act by hand.
     Acted(Box<Acted>),
     /// The request could not be carried out.

@@ -70,9 +70,24 @@ pub struct RivalResult {
     /// What the scenario asks for and this version of the engine does not do, in words.
     #[serde(skip_serializing_if = "Vec::is_empty", default)]
     pub left_out: Vec<String>,
+    /// What an independent LP code said of the relaxation, where one was asked.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub second: Option<SecondReport>,
     /// Times, apart from everything that must be equal between machines.
     #[serde(skip_serializing_if = "Option::is_none", default)]
     pub timing: Option<Timing>,
+}
+
+/// What an independent LP code said of a relaxation. It counts in no digest: the code has a limit
+/// of time.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct SecondReport {
+    /// How it ended there; `limit` when it said nothing.
+    pub status: Status,
+    /// Whether it agrees with the root; `None` when it said nothing.
+    pub agrees: Option<bool>,
+    /// The comparison in words.
+    pub words: String,
 }
 
 /// One constraint family.
@@ -94,7 +109,7 @@ pub struct FamilyReport {
 }
 
 /// The relaxation of the formulation as it is meant.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
 pub struct RootReport {
     /// How it ended.
     pub status: Status,
@@ -104,7 +119,7 @@ pub struct RootReport {
     pub checked: bool,
     /// The exact bound that was proved, as a fraction: "756/5".
     pub checked_bound: Option<String>,
-    /// What an independent LP code found, where one was asked.
+    /// The value that an independent LP code found, to nine digits, where one was asked.
     #[serde(default)]
     pub second_opinion: Option<f64>,
     /// Simplex iterations.
@@ -186,7 +201,7 @@ pub struct Timing {
 }
 
 /// The digest of results: sixteen hexadecimal digits that two machines can compare. Times,
-/// titles, letters and words do not count; the order of the results does.
+/// titles, letters, words and the second opinion do not count; the order of the results does.
 #[must_use]
 pub fn digest(results: &[RivalResult]) -> String {
     let mut bytes = Vec::new();
@@ -198,9 +213,13 @@ pub fn digest(results: &[RivalResult]) -> String {
             title: String::new(),
             assumed: Vec::new(),
             left_out: Vec::new(),
+            second: None,
             timing: None,
             ..result.clone()
         };
+        if let Some(root) = &mut compared.root {
+            root.second_opinion = None;
+        }
         for family in &mut compared.families {
             family.separation.clear();
         }
@@ -225,3 +244,25 @@ impl std::fmt::Display for ErrorReport {
 }
 
 impl std::error::Error for ErrorReport {}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn result(second_opinion: Option<f64>, bound: f64) -> RivalResult {
+        let agrees = second_opinion.map(|_| true);
+        RivalResult {
+            root: Some(RootReport { bound: Some(bound), second_opinion, ..RootReport::default() }),
+            second: Some(SecondReport { agrees, ..SecondReport::default() }),
+            ..RivalResult::default()
+        }
+    }
+
+    // Its time may run out on one machine and not on another.
+    #[test]
+    fn the_second_opinion_is_not_in_the_digest() {
+        let digest = |second, bound| digest(&[result(second, bound)]);
+        assert_eq!(digest(Some(3.0), 3.0), digest(None, 3.0));
+        assert_ne!(digest(None, 4.0), digest(None, 3.0));
+    }
+}

@@ -5,6 +5,7 @@ use std::fmt;
 use serde::{Serialize, de::DeserializeOwned};
 
 use crate::message::{Envelope, Request};
+use crate::opinion::{Opinion, Relaxation};
 
 /// The longest message, in bytes: 64 MiB.
 pub const LONGEST_MESSAGE: usize = 64 << 20;
@@ -58,6 +59,38 @@ pub fn write_envelope(envelope: &Envelope) -> Result<Vec<u8>, WireError> {
 /// # Errors
 /// Every [`WireError`]; bytes left over are an error.
 pub fn read_envelope(bytes: &[u8]) -> Result<Envelope, WireError> {
+    read(bytes)
+}
+
+/// A relaxation as bytes.
+///
+/// # Errors
+/// [`WireError::TooLong`].
+pub fn write_relaxation(relaxation: &Relaxation) -> Result<Vec<u8>, WireError> {
+    write(relaxation)
+}
+
+/// A relaxation from bytes.
+///
+/// # Errors
+/// Every [`WireError`]; bytes left over are an error.
+pub fn read_relaxation(bytes: &[u8]) -> Result<Relaxation, WireError> {
+    read(bytes)
+}
+
+/// An opinion as bytes.
+///
+/// # Errors
+/// [`WireError::TooLong`].
+pub fn write_opinion(opinion: &Opinion) -> Result<Vec<u8>, WireError> {
+    write(opinion)
+}
+
+/// An opinion from bytes.
+///
+/// # Errors
+/// Every [`WireError`]; bytes left over are an error.
+pub fn read_opinion(bytes: &[u8]) -> Result<Opinion, WireError> {
     read(bytes)
 }
 

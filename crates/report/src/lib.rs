@@ -7,6 +7,7 @@
 //! | [`layout`] | places of tree nodes, stable while the tree grows |
 //! | [`density`] | a large tree as counts by cell |
 //! | [`map`] | places fitted to a frame, arcs, hulls |
+//! | [`opinion`] | our root beside what a second LP code says |
 //! | [`labels`] | names beside their stops without collisions |
 //!
 //! Everything is pure and the same on every machine.
@@ -17,3 +18,4 @@ pub mod labels;
 pub mod layout;
 pub mod map;
 pub mod number;
+pub mod opinion;

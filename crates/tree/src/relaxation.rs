@@ -212,14 +212,20 @@ impl Relaxation {
         proof::infeasible(&self.exact, &self.bounds, ray)
     }
 
+    /// Those of the first `rows` rows that separation added.
+    pub(crate) fn added_of(&self, rows: usize) -> &[NewRow] {
+        let written = self.origins.len() - self.added.len();
+        let count = rows.saturating_sub(written).min(self.added.len());
+        &self.added[..count]
+    }
+
     /// A fresh LP with the first `rows` rows and the bounds at the end of `path`.
     ///
     /// # Errors
     /// Where the kernel refuses it.
     pub(crate) fn rebuilt(&self, rows: usize, path: &[Branch]) -> Result<Simplex, ProblemError> {
         let mut problem = problem(&self.model, |row| self.model.row_is_in(row))?;
-        let written = self.origins.len() - self.added.len();
-        for row in self.added.iter().take(rows.saturating_sub(written)) {
+        for row in self.added_of(rows) {
             problem.add_row(&row.entries, row.lower, row.upper)?;
         }
         let mut simplex = Simplex::new(problem);

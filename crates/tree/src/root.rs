@@ -1,6 +1,6 @@
 //! The root relaxation: what it gave, and the step from it into the search.
 
-use lp::Outcome;
+use lp::{NewRow, Outcome};
 use model::Number;
 
 use crate::branching::Choice;
@@ -56,6 +56,22 @@ pub struct RootResult {
 }
 
 impl Search {
+    /// The rows that separation added to the root's relaxation beside the written rows that are
+    /// in; `None` before it is solved, and where it could not be.
+    #[must_use]
+    pub fn root_rows(&self) -> Option<&[NewRow]> {
+        let relaxation = self.relaxation.as_ref()?;
+        let status = self.root.as_ref()?.status;
+        match status {
+            Status::Optimal | Status::Infeasible => {
+                Some(relaxation.added_of(self.tree.node(NodeId::ROOT).rows as usize))
+            }
+            // The search is over with it: nothing was added since.
+            Status::Unbounded => Some(relaxation.added_of(relaxation.row_count())),
+            Status::Running | Status::Limit => None,
+        }
+    }
+
     fn root_result(&self, status: Status, hand: Option<&Hand>) -> RootResult {
         RootResult {
             status,

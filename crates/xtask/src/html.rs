@@ -16,7 +16,7 @@ use crate::fault::Fault;
 pub(crate) struct Parts<'a> {
     /// The style sheet.
     pub(crate) style: &'a str,
-    /// The lengths of the packed parts: page module, engine module, worker's script.
+    /// The lengths of the packed parts: page module, engine module, its script, opinion module, its script.
     pub(crate) lengths: &'a str,
     /// The packed parts.
     pub(crate) pack: &'a str,

@@ -14,6 +14,7 @@ const ARROWS: &[(&str, &[&str])] = &[
     ("model", &[]),
     ("instance", &[]),
     ("record", &[]),
+    ("opinion", &["record"]),
     ("notation", &["instance", "model"]),
     ("separate", &["model"]),
     ("proof", &["model"]),
@@ -34,21 +35,22 @@ const ARROWS: &[(&str, &[&str])] = &[
             "catalogue",
         ],
     ),
-    ("command", &["engine", "report", "record"]),
+    ("command", &["engine", "opinion", "report", "record"]),
     ("xtask", &[]),
     ("web", &["record", "report"]),
     ("worker", &["engine"]),
+    ("opinion-worker", &["opinion"]),
 ];
 
 /// Outside crates that only some of the house may use, and who may.
 const KEPT_APART: &[(&str, &[&str])] = &[
     ("serde", &["record"]),
     ("postcard", &["record"]),
-    ("wasm-bindgen", &["web", "worker"]),
+    ("wasm-bindgen", &["web", "worker", "opinion-worker"]),
     ("web-sys", &["web", "worker"]),
     ("js-sys", &["web", "worker"]),
     ("yew", &["web"]),
-    ("microlp", &[]),
+    ("microlp", &["opinion"]),
     ("highs", &[]),
 ];
 

@@ -2,6 +2,7 @@
 
 pub(crate) mod checks;
 pub(crate) mod frame;
+pub(crate) mod opinions;
 pub(crate) mod run;
 pub(crate) mod session;
 pub(crate) mod share;

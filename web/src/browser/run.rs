@@ -6,6 +6,8 @@ use std::collections::VecDeque;
 
 use gloo_timers::callback::Timeout;
 use record::message::{Envelope, LaneJob, Reply, Request, RunNumber};
+use record::opinion::Opinion;
+use record::results::Status;
 
 use crate::browser::worker::WorkerHandle;
 use crate::state::board::LaneAction;
@@ -101,13 +103,16 @@ impl LaneRun {
         replies
     }
 
-    /// What a reply does to the lane. Node details are the session's.
+    /// What a reply does to the lane. Node details and relaxations are the session's.
     pub(crate) fn hear(&mut self, reply: Reply) -> Option<LaneAction> {
         match reply {
             Reply::Understood(rival) => Some(LaneAction::Understood(*rival)),
             Reply::Progress(progress) => Some(LaneAction::Progress(progress)),
             Reply::Root(root) => {
                 self.rooted = true;
+                if !matches!(root.status, Status::Limit | Status::Error) {
+                    self.post(&Request::Relaxation);
+                }
                 Some(LaneAction::Root(*root))
             }
             Reply::Batch(events) => {
@@ -123,7 +128,9 @@ impl LaneRun {
                 Some(LaneAction::Failed(error))
             }
             Reply::Acted(acted) => acted.refused.map(LaneAction::Notice),
+            Reply::Relaxation(Err(why)) => Some(LaneAction::Second(Opinion::Silent(why))),
             Reply::Checked(_)
+            | Reply::Relaxation(Ok(_))
             | Reply::Node(_)
             | Reply::Ready { .. }
             | Reply::InstanceRead(_)

@@ -12,12 +12,14 @@ use record::event::NodeNumber;
 use record::message::{
     CheckJob, CheckReport, Complaint, Envelope, InstanceReport, LaneJob, Reply, Request,
 };
+use record::opinion::Opinion;
 use record::results::ErrorReport;
 use record::scenario::InstanceText;
 use yew::{Callback, UseReducerDispatcher};
 
 use crate::browser::checks::{Checks, unchecked};
 use crate::browser::frame::Frame;
+use crate::browser::opinions::{Opinions, Told};
 use crate::browser::run::{LaneRun, TreeCell};
 use crate::browser::worker::{FromWorker, WorkerHandle};
 use crate::state::board::{Board, BoardAction, LaneAction};
@@ -47,6 +49,7 @@ struct Inner {
     reading: Option<Shared<InstanceText>>,
     wanted: Option<Shared<InstanceText>>,
     checks: Checks,
+    opinions: Opinions,
     frame: Option<Frame>,
 }
 
@@ -56,16 +59,19 @@ impl Session {
         board: UseReducerDispatcher<Board>,
         document: UseReducerDispatcher<Document>,
     ) -> Self {
-        let session = Self(Rc::new(RefCell::new(Inner {
-            board,
-            document,
-            lanes: BTreeMap::new(),
-            author: None,
-            reading: None,
-            wanted: None,
-            checks: Checks::default(),
-            frame: None,
-        })));
+        let session = Self(Rc::new_cyclic(|session| {
+            RefCell::new(Inner {
+                board,
+                document,
+                lanes: BTreeMap::new(),
+                author: None,
+                reading: None,
+                wanted: None,
+                checks: Checks::default(),
+                opinions: Opinions::new(hearing_opinions(session.clone())),
+                frame: None,
+            })
+        }));
         session.start_author();
         session
     }
@@ -95,6 +101,7 @@ impl Session {
     pub(crate) fn load(&self, id: LaneId, job: LaneJob) {
         let action = {
             let mut inner = self.0.borrow_mut();
+            inner.opinions.give_up(id);
             let old = inner.lanes.remove(&id);
             let run = old.as_ref().map(|lane| lane.job.run).unwrap_or_default();
             let worker = old.and_then(|lane| lane.worker).or_else(|| self.lane_worker(id));
@@ -112,6 +119,7 @@ impl Session {
         let board = {
             let mut inner = self.0.borrow_mut();
             inner.lanes.remove(&id);
+            inner.opinions.give_up(id);
             inner.board.clone()
         };
         board.dispatch(BoardAction::Removed(id));
@@ -150,6 +158,7 @@ impl Session {
     pub(crate) fn search_anew(&self, id: LaneId) {
         let action = {
             let mut inner = self.0.borrow_mut();
+            inner.opinions.give_up(id);
             let Some(lane) = inner.lanes.get_mut(&id) else { return };
             if lane.worker.is_none() {
                 lane.worker = self.lane_worker(id);
@@ -188,6 +197,7 @@ impl Session {
             lane.watchdog = Some(watchdog);
         }
         self.tell(id, LaneAction::Asked(Phase::Stopping));
+        self.stop_opinion(id);
     }
 
     /// Asks for a node in full.
@@ -255,11 +265,12 @@ impl Session {
     /// Takes in what waits for this frame.
     fn take_in(&self) {
         let (board, actions, begun, more) = {
-            let mut inner = self.0.borrow_mut();
+            let inner = &mut *self.0.borrow_mut();
             inner.frame = None;
             let (mut actions, mut begun) = (Vec::new(), Vec::new());
             for (&id, lane) in &mut inner.lanes {
-                begun.extend(take_in_lane(id, lane, &mut actions).then_some(id));
+                let begins = take_in_lane(id, lane, &mut inner.opinions, &mut actions);
+                begun.extend(begins.then_some(id));
             }
             let more = inner.lanes.values().any(|lane| !lane.inbox.is_empty());
             (inner.board.clone(), actions, begun, more)
@@ -296,6 +307,24 @@ impl Session {
         };
         for action in actions {
             self.tell(id, action);
+        }
+    }
+
+    fn stop_opinion(&self, id: LaneId) {
+        if self.0.borrow_mut().opinions.give_up(id) {
+            self.tell(id, LaneAction::Second(Opinion::Silent("stopped".to_owned())));
+        }
+    }
+
+    fn hear_opinion(&self, told: Told) {
+        let current = {
+            let mut inner = self.0.borrow_mut();
+            let Some(((id, run), opinion)) = inner.opinions.end(told) else { return };
+            let lane = inner.lanes.get(&id).filter(|lane| lane.job.run == run);
+            lane.map(|_| (id, opinion))
+        };
+        if let Some((id, opinion)) = current {
+            self.tell(id, LaneAction::Second(opinion));
         }
     }
 
@@ -368,14 +397,34 @@ impl Inner {
     }
 }
 
+fn hearing_opinions(session: Weak<RefCell<Inner>>) -> Callback<Told> {
+    Callback::from(move |told| {
+        if let Some(session) = upgrade(&session) {
+            session.hear_opinion(told);
+        }
+    })
+}
+
 fn upgrade(session: &Weak<RefCell<Inner>>) -> Option<Session> {
     session.upgrade().map(Session)
 }
 
 /// Takes in what waits for a lane; whether its search began with that.
-fn take_in_lane(id: LaneId, lane: &mut LaneRun, actions: &mut Vec<BoardAction>) -> bool {
+fn take_in_lane(
+    id: LaneId,
+    lane: &mut LaneRun,
+    opinions: &mut Opinions,
+    actions: &mut Vec<BoardAction>,
+) -> bool {
     let mut begun = false;
     for reply in lane.take() {
+        let reply = match reply {
+            Reply::Relaxation(Ok(relaxation)) => {
+                opinions.ask((id, lane.job.run), relaxation);
+                continue;
+            }
+            reply => reply,
+        };
         if let Reply::Node(detail) = reply {
             actions.push(BoardAction::Detail(id, *detail));
             continue;

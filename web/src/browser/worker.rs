@@ -1,6 +1,6 @@
-//! An engine worker: started with the compiled engine, ended when dropped.
+//! A worker: started with its compiled module, ended when dropped.
 //!
-//! The boot script leaves the compiled module and the worker's script in `globalThis.hullward`.
+//! The boot script leaves the compiled modules and the workers' scripts in `globalThis.hullward`.
 //! The module is posted first, then requests; replies come back as bytes, a failure as text.
 
 use gloo_events::EventListener;
@@ -11,7 +11,16 @@ use wasm_bindgen::{JsCast, JsValue};
 use web_sys::{ErrorEvent, MessageEvent, Worker};
 use yew::Callback;
 
-/// What comes from a worker.
+/// What a worker runs.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Program {
+    /// The engine.
+    Engine,
+    /// The second LP code.
+    Opinion,
+}
+
+/// What comes from an engine worker.
 #[derive(Debug)]
 pub(crate) enum FromWorker {
     /// A reply.
@@ -20,69 +29,93 @@ pub(crate) enum FromWorker {
     Failure(String),
 }
 
-/// A running worker.
+/// A running engine worker.
 #[derive(Debug)]
-pub(crate) struct WorkerHandle {
-    worker: Worker,
-    _listeners: [EventListener; 3],
-}
+pub(crate) struct WorkerHandle(RawWorker);
 
 impl WorkerHandle {
     /// Starts a worker; what it says goes to `hear`.
     pub(crate) fn start(hear: &Callback<FromWorker>) -> Result<Self, String> {
+        RawWorker::start(Program::Engine, &hear.reform(decoded)).map(Self)
+    }
+
+    /// Sends a request.
+    pub(crate) fn post(&self, request: &Request) -> Result<(), String> {
+        self.0.post(&write_request(request).map_err(|error| error.to_string())?)
+    }
+}
+
+/// A running worker that speaks in bytes.
+#[derive(Debug)]
+pub(crate) struct RawWorker {
+    worker: Worker,
+    _listeners: [EventListener; 3],
+}
+
+impl RawWorker {
+    /// Starts a worker; what it says, or why it failed, goes to `hear`.
+    pub(crate) fn start(
+        program: Program,
+        hear: &Callback<Result<Vec<u8>, String>>,
+    ) -> Result<Self, String> {
         let parts = Reflect::get(&global(), &JsValue::from_str("hullward"))
             .map_err(|error| text(&error))?;
         let part = |name: &str| {
             Reflect::get(&parts, &JsValue::from_str(name)).map_err(|error| text(&error))
         };
-        let address = part("workerUrl")?.as_string().ok_or("the page has no worker script")?;
+        let (module, script) = match program {
+            Program::Engine => ("engineModule", "workerUrl"),
+            Program::Opinion => ("opinionModule", "opinionUrl"),
+        };
+        let address = part(script)?.as_string().ok_or("the page has no worker script")?;
         let worker = Worker::new(&address).map_err(|error| text(&error))?;
-        worker.post_message(&part("engineModule")?).map_err(|error| text(&error))?;
+        worker.post_message(&part(module)?).map_err(|error| text(&error))?;
         let listeners = listeners(&worker, hear);
         Ok(Self { worker, _listeners: listeners })
     }
 
-    /// Sends a request.
-    pub(crate) fn post(&self, request: &Request) -> Result<(), String> {
-        let bytes = write_request(request).map_err(|error| error.to_string())?;
-        self.worker.post_message(&Uint8Array::from(bytes.as_slice())).map_err(|error| text(&error))
+    /// Sends bytes.
+    pub(crate) fn post(&self, bytes: &[u8]) -> Result<(), String> {
+        self.worker.post_message(&Uint8Array::from(bytes)).map_err(|error| text(&error))
     }
 }
 
-impl Drop for WorkerHandle {
+impl Drop for RawWorker {
     fn drop(&mut self) {
         self.worker.terminate();
     }
 }
 
-fn listeners(worker: &Worker, hear: &Callback<FromWorker>) -> [EventListener; 3] {
+fn listeners(worker: &Worker, hear: &Callback<Result<Vec<u8>, String>>) -> [EventListener; 3] {
     let on_message = hear.clone();
     let on_error = hear.clone();
     let on_garbled = hear.clone();
     [
         EventListener::new(worker, "message", move |event| {
             if let Some(event) = event.dyn_ref::<MessageEvent>() {
-                on_message.emit(decoded(&event.data()));
+                on_message.emit(bytes(&event.data()));
             }
         }),
         EventListener::new(worker, "error", move |event| {
             let message = event.dyn_ref::<ErrorEvent>().map(ErrorEvent::message);
-            on_error.emit(FromWorker::Failure(message.unwrap_or_default()));
+            on_error.emit(Err(message.unwrap_or_default()));
         }),
         EventListener::new(worker, "messageerror", move |_| {
-            on_garbled.emit(FromWorker::Failure("a message could not be read".to_owned()));
+            on_garbled.emit(Err("a message could not be read".to_owned()));
         }),
     ]
 }
 
-fn decoded(data: &JsValue) -> FromWorker {
-    if let Some(bytes) = data.dyn_ref::<Uint8Array>() {
-        return match read_envelope(&bytes.to_vec()) {
-            Ok(envelope) => FromWorker::Reply(envelope),
-            Err(error) => FromWorker::Failure(error.to_string()),
-        };
+fn bytes(data: &JsValue) -> Result<Vec<u8>, String> {
+    match data.dyn_ref::<Uint8Array>() {
+        Some(bytes) => Ok(bytes.to_vec()),
+        None => Err(data.as_string().unwrap_or_default()),
     }
-    FromWorker::Failure(data.as_string().unwrap_or_default())
+}
+
+fn decoded(said: Result<Vec<u8>, String>) -> FromWorker {
+    let envelope = said.and_then(|bytes| read_envelope(&bytes).map_err(|error| error.to_string()));
+    envelope.map_or_else(FromWorker::Failure, FromWorker::Reply)
 }
 
 fn text(value: &JsValue) -> String {

@@ -5,6 +5,7 @@ use std::rc::Rc;
 
 use record::event::NodeNumber;
 use record::message::{NodeDetail, Progress, RivalReport};
+use record::opinion::Opinion;
 use record::results::{ErrorReport, RootReport, SearchReport};
 use yew::Reducible;
 
@@ -61,6 +62,8 @@ pub(crate) enum LaneAction {
     Progress(Progress),
     /// The root is solved.
     Root(RootReport),
+    /// What a second LP code says of the root.
+    Second(Opinion),
     /// The tree has grown.
     Grown(Tally),
     /// The phase is another, because it was asked for.
@@ -201,6 +204,7 @@ impl Lane {
                 self.root = Some(Shared::new(root));
                 self.phase = Phase::Ready;
             }
+            LaneAction::Second(opinion) => self.second = Some(Shared::new(opinion)),
             LaneAction::Grown(tally) => self.tally = tally,
             LaneAction::Asked(phase) => self.phase = phase,
             LaneAction::Paused(search, tally) => self.rest(Phase::Paused, search, tally),
@@ -277,6 +281,22 @@ mod tests {
         let lane = board.lane(LaneId(1));
         assert_eq!(lane.phase, Phase::Loading);
         assert!(lane.root.is_none() && board.selection.is_none());
+    }
+
+    #[test]
+    fn a_second_opinion_stands_beside_the_root_and_goes_with_it() {
+        let second =
+            |value| BoardAction::Lane(LaneId(1), LaneAction::Second(Opinion::Optimal(value)));
+        let board = reduce(rooted(&[1]), second(9.0));
+        let lane = board.lane(LaneId(1));
+        assert_eq!(
+            (lane.root_bound(), lane.bound()),
+            (Some(10.0), Some(10.0)),
+            "the bound is ours"
+        );
+        assert!(lane.second.as_deref() == Some(&Opinion::Optimal(9.0)));
+        let board = reduce(board, BoardAction::Lane(LaneId(1), LaneAction::Load));
+        assert!(board.lane(LaneId(1)).second.is_none());
     }
 
     #[test]

@@ -1,6 +1,7 @@
 //! One rival's lane: how far its run is.
 
 use record::message::{Progress, RivalReport};
+use record::opinion::Opinion;
 use record::results::{ErrorReport, RootReport, SearchReport};
 
 use crate::state::pointer::Shared;
@@ -60,6 +61,8 @@ pub(crate) struct Lane {
     pub(crate) rival: Option<Shared<RivalReport>>,
     /// The root.
     pub(crate) root: Option<Shared<RootReport>>,
+    /// What a second LP code says of the root.
+    pub(crate) second: Option<Shared<Opinion>>,
     /// The search, once it paused or ended.
     pub(crate) search: Option<Shared<SearchReport>>,
     /// Counts of the tree.

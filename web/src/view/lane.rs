@@ -23,6 +23,7 @@ use crate::view::hands::{Hands, use_hands};
 use crate::view::inspector::{focus, focus_inspector};
 use crate::view::paint::Scene;
 use crate::view::ruler::Ruler;
+use crate::view::second::second;
 use crate::view::twin::Twin;
 
 /// Height of a tree in pixels.
@@ -70,6 +71,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                     <p class="small soft">{ "A relaxation: bounded, not compared for its optimum." }</p>
                 }
                 { figures(props) }
+                { second(&props.lane) }
                 <p class="small" data-testid="status">{ status(&props.lane) }</p>
                 if !props.lane.notice.is_empty() {
                     <p class="small warn" data-testid="notice">{ props.lane.notice.clone() }</p>

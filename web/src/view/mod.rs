@@ -24,6 +24,7 @@ pub(crate) mod paste;
 mod picture;
 pub(crate) mod rivals;
 pub(crate) mod ruler;
+pub(crate) mod second;
 pub(crate) mod share;
 pub(crate) mod twin;
 pub(crate) mod values;

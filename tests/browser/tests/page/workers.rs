@@ -8,12 +8,12 @@ use hullward_tests_browser::visit::{Source, visit};
 
 use crate::lanes::{add, button, paste_long_work, status, text};
 
-/// Makes the page's later workers known to the test.
+/// Makes the page's later engine workers known to the test.
 const KEEP_WORKERS: &str = "
     globalThis.workersOfTest = [];
     const Plain = globalThis.Worker;
     globalThis.Worker = class extends Plain {
-      constructor(...given) { super(...given); workersOfTest.push(this); }
+      constructor(...given) { super(...given); if (given[0] === hullward.workerUrl) workersOfTest.push(this); }
     };
 ";
 

@@ -17,6 +17,7 @@ mod nodes;
 
 #[path = "page/drawings.rs"]
 mod drawings;
+
 #[path = "page/second.rs"]
 mod second;
 

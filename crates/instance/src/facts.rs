@@ -135,8 +135,8 @@ fn fewest_drives(square: &Square, start: &str, end: &str) -> Option<usize> {
     while !front.contains(&end) {
         let mut next = Vec::new();
         for i in front {
-            for j in 0..square.len() {
-                if square.at(i, j).is_some() && !std::mem::replace(&mut seen[j], true) {
+            for (j, seen) in seen.iter_mut().enumerate() {
+                if square.at(i, j).is_some() && !std::mem::replace(seen, true) {
                     next.push(j);
                 }
             }

@@ -5,6 +5,7 @@ use std::io::{Result, Write};
 
 use record::results::{self, RivalResult, SearchReport, Status};
 use record::scenario::Scenario;
+use report::explain;
 use report::number::{count, of, percent, short};
 
 /// Stands under every table.
@@ -157,6 +158,8 @@ fn notes(one: &RivalResult) -> Vec<String> {
     let stopped = stopped.or(one.root.as_ref().and_then(|root| root.stopped.clone()));
     notes.extend(stopped.map(|why| format!("stopped: {why}")));
     notes.extend(one.error.as_ref().map(|error| error.message.clone()));
+    notes.extend(one.root.as_ref().and_then(|root| explain::root(root, one.maximise)));
+    notes.extend(one.conflict.as_ref().map(explain::conflict));
     if let Some(root) = &one.root
         && let (Some(exact), true) = (&root.checked_bound, root.checked)
         && exact.contains('/')

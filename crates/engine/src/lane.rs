@@ -1,8 +1,11 @@
 //! One rival from its text to the end of its search.
 //!
 //! ```text
-//! Begin → Read → Expanding → Expanded → Root → Waiting ⇄ Running → Over
+//! Begin → Read → Expanding → Expanded → Root → Waiting ⇄ Running → Explaining → Over
 //! ```
+//!
+//! A search that found no plan though its relaxation has a point is explained: which families
+//! cannot hold together. Every other goes from running to over.
 //!
 //! Each step up to the root is at least a slice of its own, so that a request is heard between.
 //! A request that comes too early waits: "run" before the root is solved is remembered.
@@ -11,9 +14,9 @@ use std::rc::Rc;
 
 use model::Model;
 use record::message::{LaneJob, Progress, Reply, Request};
-use record::results::ErrorReport;
+use record::results::{ErrorReport, Status};
 use record::scenario::Act;
-use tree::{NodeId, Search};
+use tree::{Conflict, ConflictLimits, NodeId, Search};
 
 use crate::fault::fault;
 use crate::load::{Loaded, Loading};
@@ -34,6 +37,7 @@ enum Stage {
     Root(Box<Solver>),
     Waiting(Box<Solver>),
     Running(Box<Solver>),
+    Explaining(Box<Solver>, Box<Conflict>),
     Over(Option<Box<Solver>>),
 }
 
@@ -82,6 +86,7 @@ impl Lane {
             Stage::Expanded(loaded) => self.begin_search(*loaded, outbox),
             Stage::Root(solver) => self.solve(solver, ticks, outbox, Stage::Root),
             Stage::Running(solver) => self.solve(solver, ticks, outbox, Stage::Running),
+            Stage::Explaining(solver, conflict) => self.explain(solver, conflict, ticks, outbox),
             resting => resting,
         };
     }
@@ -168,7 +173,37 @@ impl Lane {
 
     fn end(&mut self, solver: Box<Solver>, outbox: &mut Outbox) -> Stage {
         let report = map::search_report(&solver.model, &solver.search);
+        let unexplained = report.status == Status::Infeasible
+            && solver.search.root().is_some_and(|root| root.status == tree::Status::Optimal);
         outbox.push(self.job.run, Reply::Done(Box::new(report)));
+        if !unexplained {
+            return Stage::Over(Some(solver));
+        }
+        let conflict = Conflict::new(Rc::clone(&solver.model), ConflictLimits::default());
+        Stage::Explaining(solver, Box::new(conflict))
+    }
+
+    /// Goes on looking for the families that cannot hold together.
+    fn explain(
+        &self,
+        solver: Box<Solver>,
+        mut conflict: Box<Conflict>,
+        ticks: u64,
+        outbox: &mut Outbox,
+    ) -> Stage {
+        if conflict.advance(ticks) {
+            return self.explained(solver, &conflict, outbox);
+        }
+        let doing = "looking for the families that cannot hold together".to_owned();
+        let progress = Progress { doing, ticks: conflict.ticks(), iterations: 0 };
+        outbox.push(self.job.run, Reply::Progress(progress));
+        Stage::Explaining(solver, conflict)
+    }
+
+    /// Says which families cannot hold together, as far as that is known.
+    fn explained(&self, solver: Box<Solver>, conflict: &Conflict, outbox: &mut Outbox) -> Stage {
+        let report = map::conflict_report(&solver.model, &conflict.result());
+        outbox.push(self.job.run, Reply::Conflict(report));
         Stage::Over(Some(solver))
     }
 
@@ -225,6 +260,10 @@ impl Lane {
                 let at_once = solver.search.root().is_some() && solver.search.has_acts_waiting();
                 if at_once { Stage::Running(solver) } else { Stage::Waiting(solver) }
             }
+            Stage::Explaining(mut solver, conflict) => {
+                self.hand_over(act, &mut solver, outbox);
+                Stage::Explaining(solver, conflict)
+            }
             Stage::Over(Some(mut solver)) => {
                 self.hand_over(act, &mut solver, outbox);
                 Stage::Over(Some(solver))
@@ -261,7 +300,7 @@ impl Lane {
                 solver.search.run(nodes);
                 Stage::Running(solver)
             }
-            over @ Stage::Over(_) => over,
+            over @ (Stage::Explaining(..) | Stage::Over(_)) => over,
             earlier => {
                 self.asked = Some(nodes);
                 earlier
@@ -294,6 +333,7 @@ impl Lane {
                 outbox.push(self.job.run, Reply::Done(Box::new(report)));
                 Stage::Over(None)
             }
+            Stage::Explaining(solver, conflict) => self.explained(solver, &conflict, outbox),
             over @ Stage::Over(_) => over,
         };
     }
@@ -313,6 +353,7 @@ impl Lane {
         let (Stage::Root(solver)
         | Stage::Waiting(solver)
         | Stage::Running(solver)
+        | Stage::Explaining(solver, _)
         | Stage::Over(Some(solver))) = &mut self.stage
         else {
             outbox.push(self.job.run, Reply::Failed(fault("rival", "there is no node yet")));

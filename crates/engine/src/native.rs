@@ -3,7 +3,9 @@
 
 use record::event::Event;
 use record::message::{Acted, LaneJob, Reply, Request, RivalReport};
-use record::results::{ErrorReport, FamilyReport, RivalResult, RootReport, SearchReport, Status};
+use record::results::{
+    ConflictReport, ErrorReport, FamilyReport, RivalResult, RootReport, SearchReport, Status,
+};
 use record::scenario::{Act, ActKind, Rival, Role, Scenario, letter};
 
 use crate::fault::fault;
@@ -55,6 +57,8 @@ pub struct RivalRun {
     pub root: Option<RootReport>,
     /// Its search, if it was searched.
     pub search: Option<SearchReport>,
+    /// Which families cannot hold together, where the search found no plan.
+    pub conflict: Option<ConflictReport>,
     /// Why there is no result.
     pub error: Option<ErrorReport>,
     /// Its root's relaxation for a second LP code, as bytes, or why it is not handed over.
@@ -120,6 +124,7 @@ pub fn result(
         title: given.map_or_else(String::new, |rival| rival.title.clone()),
         root: run.root.clone(),
         search: run.search.clone(),
+        conflict: run.conflict.clone(),
         error: run.error.clone(),
         relaxation: given.is_some_and(is_relaxation),
         left_out: left_out(scenario, given, run),
@@ -237,6 +242,7 @@ impl Drive {
                 Reply::Root(root) => self.run.root = Some(*root),
                 Reply::Batch(events) => self.note(events),
                 Reply::Paused(report) | Reply::Done(report) => self.run.search = Some(*report),
+                Reply::Conflict(conflict) => self.run.conflict = Some(conflict),
                 Reply::Failed(error) => self.run.error = Some(error),
                 Reply::Relaxation(relaxation) => self.run.relaxation = Some(relaxation),
                 Reply::Acted(acted) => self.run.refused.extend(refusal(&acted)),

@@ -22,6 +22,7 @@
 //! | [`mps`] | models of others, and models for others |
 
 mod builder;
+mod feasibility;
 mod id;
 mod labels;
 mod model;

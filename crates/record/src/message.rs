@@ -4,7 +4,7 @@
 use serde::{Deserialize, Serialize};
 
 use crate::event::{Branching, Event, NodeNumber, NodeState};
-use crate::results::{ErrorReport, FamilyReport, RootReport, SearchReport};
+use crate::results::{ConflictReport, ErrorReport, FamilyReport, RootReport, SearchReport};
 use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
 
 /// The number of a run of a lane: replies of an older run are dropped by the page.
@@ -105,8 +105,11 @@ pub enum Reply {
     Batch(Vec<Event>),
     /// The search stands still and can go on.
     Paused(Box<SearchReport>),
-    /// The search has ended.
+    /// The search has ended. Where it found no plan though the relaxation has a point,
+    /// [`Reply::Conflict`] follows.
     Done(Box<SearchReport>),
+    /// Families that cannot hold together.
+    Conflict(ConflictReport),
     /// A node in full.
     Node(Box<NodeDetail>),
     /// The root's relaxation as the bytes of [`crate::wire`], or why it is not handed over, as a

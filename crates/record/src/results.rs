@@ -61,6 +61,10 @@ pub struct RivalResult {
     /// The search.
     #[serde(skip_serializing_if = "Option::is_none", default)]
     pub search: Option<SearchReport>,
+    /// Which families cannot hold together, where the relaxation has a point and the search
+    /// found that there is no plan.
+    #[serde(skip_serializing_if = "Option::is_none", default)]
+    pub conflict: Option<ConflictReport>,
     /// Why there is no result.
     #[serde(skip_serializing_if = "Option::is_none", default)]
     pub error: Option<ErrorReport>,
@@ -133,7 +137,8 @@ pub struct RootReport {
     /// The same by family, in the order of the model's families.
     #[serde(default)]
     pub added_by_family: Vec<u32>,
-    /// Rows of a Farkas ray, by name with multiplier, when infeasible.
+    /// Rows of a Farkas ray, by name with multiplier, when infeasible; when unbounded, columns
+    /// with the step along which the objective has no bound.
     #[serde(default)]
     pub ray: Vec<(String, f64)>,
     /// What ended it early, when the status is `limit`.
@@ -178,6 +183,31 @@ pub struct SolutionEntry {
     pub indices: Vec<String>,
     /// The value.
     pub value: f64,
+}
+
+/// Constraint families that cannot hold together with the domains.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct ConflictReport {
+    /// Their names in the order of their statements; none when the domains alone have no plan.
+    pub families: Vec<String>,
+    /// What is known of the set.
+    pub level: ConflictLevel,
+    /// Nodes solved to find it.
+    pub nodes: u32,
+    /// Sets of families that were tried.
+    pub trials: u32,
+}
+
+/// What is known of families in conflict.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "lowercase")]
+pub enum ConflictLevel {
+    /// Any fewer families can hold together.
+    Smallest,
+    /// The others can hold together when any one is left out.
+    Irreducible,
+    /// A limit left it open whether each of them is needed.
+    Undecided,
 }
 
 /// Why there is no result.

@@ -4,6 +4,7 @@
 //! |---|---|
 //! | [`number`] | numbers as a reader wants them |
 //! | [`axis`] | round ticks and the shared scale |
+//! | [`explain`] | why a rival has no plan or no bound, in sentences |
 //! | [`layout`] | places of tree nodes, stable while the tree grows |
 //! | [`density`] | a large tree as counts by cell |
 //! | [`map`] | places fitted to a frame, arcs, hulls |
@@ -14,6 +15,7 @@
 
 pub mod axis;
 pub mod density;
+pub mod explain;
 pub mod labels;
 pub mod layout;
 pub mod map;

@@ -39,6 +39,7 @@
 //! | [`RootResult`], [`Summary`] | what came out |
 //! | [`Event`] | what happened, in order |
 //! | [`Search::inspect`] | one node in full |
+//! | [`Conflict`] | which families of an infeasible model cannot hold together |
 //!
 //! **Bounds are true.** Every node's LP is solved to its end, also where its bound passes the
 //! incumbent on the way: each node of the log stands at the bound of its relaxation. A node starts from its
@@ -52,8 +53,10 @@
 
 mod acts;
 mod branching;
+mod conflict;
 mod cycle;
 mod decide;
+mod direction;
 mod event;
 mod inspect;
 mod node;
@@ -74,6 +77,7 @@ mod tour;
 mod work;
 
 pub use acts::{Act, Acted, Refusal};
+pub use conflict::{Certainty, Conflict, ConflictLimits, ConflictResult};
 pub use cycle::Cycle;
 pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
 pub use inspect::{NodeView, ViolatedSubset};

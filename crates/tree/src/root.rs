@@ -49,7 +49,8 @@ pub struct RootResult {
     pub x: Vec<f64>,
     /// The reduced cost of each column in the direction of the objective; empty unless optimal.
     pub reduced_costs: Vec<f64>,
-    /// Rows of a Farkas ray with their multipliers, when infeasible.
+    /// Rows of a Farkas ray with their multipliers, when infeasible; when unbounded, columns with
+    /// the step along which the objective has no bound.
     pub ray: Vec<(String, f64)>,
     /// What ended it early, when the status is a limit.
     pub stopped: Option<String>,
@@ -146,6 +147,9 @@ impl Search {
     fn root_over(&mut self, status: Status, state: NodeState, ending: Ending) -> Option<Progress> {
         let hand = self.hand.take();
         let mut result = self.root_result(status, hand.as_ref());
+        if ending == Ending::Unbounded {
+            result.ray = self.named_direction();
+        }
         if let Ending::Stopped(why) = &ending {
             result.stopped = Some(why.clone());
             if let Some((bound, proved)) = self.bound_so_far(hand.as_ref()) {

@@ -122,6 +122,10 @@ impl LaneRun {
             }
             Reply::Paused(report) => Some(LaneAction::Paused(*report, self.settled())),
             Reply::Done(report) => Some(LaneAction::Done(*report, self.settled())),
+            Reply::Conflict(conflict) => {
+                self.watchdog = None;
+                Some(LaneAction::Conflict(conflict))
+            }
             Reply::Failed(error) if self.rooted => Some(LaneAction::Notice(error.message)),
             Reply::Failed(error) => {
                 self.watchdog = None;

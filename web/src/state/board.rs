@@ -6,7 +6,7 @@ use std::rc::Rc;
 use record::event::NodeNumber;
 use record::message::{NodeDetail, Progress, RivalReport};
 use record::opinion::Opinion;
-use record::results::{ErrorReport, RootReport, SearchReport};
+use record::results::{ConflictReport, ErrorReport, RootReport, SearchReport, Status};
 use yew::Reducible;
 
 use crate::state::lane::{Lane, LaneId, Phase};
@@ -72,6 +72,8 @@ pub(crate) enum LaneAction {
     Paused(SearchReport, Tally),
     /// The search has ended.
     Done(SearchReport, Tally),
+    /// Families that cannot hold together.
+    Conflict(ConflictReport),
     /// It could not be carried out.
     Failed(ErrorReport),
     /// Something happened to the worker.
@@ -208,13 +210,27 @@ impl Lane {
             LaneAction::Grown(tally) => self.tally = tally,
             LaneAction::Asked(phase) => self.phase = phase,
             LaneAction::Paused(search, tally) => self.rest(Phase::Paused, search, tally),
-            LaneAction::Done(search, tally) => self.rest(Phase::Done, search, tally),
+            LaneAction::Done(search, tally) => {
+                let phase = self.phase_after(search.status);
+                self.rest(phase, search, tally);
+            }
+            LaneAction::Conflict(conflict) => {
+                self.conflict = Some(Shared::new(conflict));
+                self.phase = Phase::Done;
+            }
             LaneAction::Failed(error) => {
                 self.error = Some(Shared::new(error));
                 self.phase = Phase::Failed;
             }
             LaneAction::Notice(notice) => self.notice = notice,
         }
+    }
+
+    /// What follows the end of a search: one that found no plan though its relaxation has a point
+    /// is explained.
+    fn phase_after(&self, ended: Status) -> Phase {
+        let pointed = self.root.as_ref().is_some_and(|root| root.status == Status::Optimal);
+        if ended == Status::Infeasible && pointed { Phase::Explaining } else { Phase::Done }
     }
 
     fn rest(&mut self, phase: Phase, search: SearchReport, tally: Tally) {
@@ -227,7 +243,6 @@ impl Lane {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use record::results::Status;
 
     fn reduce(board: Rc<Board>, action: BoardAction) -> Rc<Board> {
         board.reduce(action)

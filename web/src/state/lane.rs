@@ -2,7 +2,7 @@
 
 use record::message::{Progress, RivalReport};
 use record::opinion::Opinion;
-use record::results::{ErrorReport, RootReport, SearchReport};
+use record::results::{ConflictReport, ErrorReport, RootReport, SearchReport};
 
 use crate::state::pointer::Shared;
 use crate::state::tree::Tally;
@@ -27,6 +27,8 @@ pub(crate) enum Phase {
     Pausing,
     /// The search stands still.
     Paused,
+    /// The search found no plan; its worker looks for the families that cannot hold together.
+    Explaining,
     /// A stop was asked for.
     Stopping,
     /// The run has ended.
@@ -38,7 +40,10 @@ pub(crate) enum Phase {
 impl Phase {
     /// Whether a worker is at it.
     pub(crate) fn is_busy(self) -> bool {
-        matches!(self, Self::Loading | Self::Running | Self::Pausing | Self::Stopping)
+        matches!(
+            self,
+            Self::Loading | Self::Running | Self::Pausing | Self::Explaining | Self::Stopping
+        )
     }
 
     /// Whether the search can go on from here.
@@ -48,7 +53,10 @@ impl Phase {
 
     /// Whether there is something to stop.
     pub(crate) fn can_stop(self) -> bool {
-        matches!(self, Self::Loading | Self::Running | Self::Pausing | Self::Paused)
+        matches!(
+            self,
+            Self::Loading | Self::Running | Self::Pausing | Self::Explaining | Self::Paused
+        )
     }
 }
 
@@ -65,6 +73,8 @@ pub(crate) struct Lane {
     pub(crate) second: Option<Shared<Opinion>>,
     /// The search, once it paused or ended.
     pub(crate) search: Option<Shared<SearchReport>>,
+    /// Families that cannot hold together, where there is no plan.
+    pub(crate) conflict: Option<Shared<ConflictReport>>,
     /// Counts of the tree.
     pub(crate) tally: Tally,
     /// What the worker is doing.

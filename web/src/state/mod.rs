@@ -9,6 +9,7 @@ pub(crate) mod highlight;
 pub(crate) mod history;
 pub(crate) mod lane;
 pub(crate) mod outline;
+pub(crate) mod places;
 pub(crate) mod pointer;
 pub(crate) mod share;
 pub(crate) mod tree;

@@ -16,6 +16,10 @@ pub(crate) fn status(lane: &Lane) -> String {
         Phase::Running => format!("searching: {}", counts(lane)),
         Phase::Pausing => "pausing".to_owned(),
         Phase::Paused => format!("paused: {}", counts(lane)),
+        Phase::Explaining => format!(
+            "{}; looking for the families that cannot hold together",
+            no_plan(&of(u64::from(lane.nodes()), "node"))
+        ),
         Phase::Stopping => "stopping".to_owned(),
         Phase::Done => done(lane),
         Phase::Failed => "could not be run".to_owned(),
@@ -65,7 +69,7 @@ fn ended(search: &SearchReport, nodes: &str) -> String {
             Some(value) => format!("closed: {} is optimal, {nodes}", short(value)),
             None => format!("closed: nothing better than the value given, {nodes}"),
         },
-        Status::Infeasible => format!("closed: no solution exists, {nodes}"),
+        Status::Infeasible => no_plan(nodes),
         Status::Unbounded => "the objective has no bound".to_owned(),
         Status::Limit => {
             let why = match search.stopped.as_deref() {
@@ -80,6 +84,10 @@ fn ended(search: &SearchReport, nodes: &str) -> String {
         }
         Status::Error => "the search failed".to_owned(),
     }
+}
+
+fn no_plan(nodes: &str) -> String {
+    format!("closed: no solution exists, {nodes}")
 }
 
 /// A clause with a stop at its end.

@@ -50,6 +50,11 @@ pub(crate) fn toggle(id: LaneId, letter: &str, open: &UseStateHandle<bool>) -> H
     }
 }
 
+/// The id of the box that holds the text.
+pub(crate) fn text_box(id: LaneId) -> String {
+    format!("{}-text", panel(id))
+}
+
 fn panel(id: LaneId) -> String {
     format!("notation-{}", id.0)
 }
@@ -89,7 +94,7 @@ pub(crate) fn Editor(props: &EditorProps) -> Html {
             <div>
                 { heading(&state.draft, &change) }
                 <ScriptBox
-                    id={format!("{}-text", panel(id))} label={format!("Notation of {}", props.letter)}
+                    id={text_box(id)} label={format!("Notation of {}", props.letter)}
                     text={state.draft.text.clone()} pieces={(*coloured).clone()}
                     invalid={state.is_wrong()} described_by={format!("{told} {listed}")}
                     area={area.clone()} typed={typed.clone()} enter={enter.clone()}

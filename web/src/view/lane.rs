@@ -22,6 +22,7 @@ use crate::view::figure::{figure, gap, share};
 use crate::view::hands::{Hands, use_hands};
 use crate::view::inspector::{focus, focus_inspector};
 use crate::view::paint::Scene;
+use crate::view::reason::reason;
 use crate::view::ruler::Ruler;
 use crate::view::second::second;
 use crate::view::twin::Twin;
@@ -76,6 +77,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 if !props.lane.notice.is_empty() {
                     <p class="small warn" data-testid="notice">{ props.lane.notice.clone() }</p>
                 }
+                { reason(props.slot.id, &props.lane, props.draft.is_some().then_some(&writing)) }
                 if let Some(error) = &props.lane.error { { failure(error) } }
                 if let Some(hands) = &hands { { buttons(props, hands) } }
                 if props.draft.is_some() { { toggle(props.slot.id, &props.letter, &writing) } }

@@ -22,6 +22,7 @@ pub(crate) mod notes;
 pub(crate) mod paint;
 pub(crate) mod paste;
 mod picture;
+pub(crate) mod reason;
 pub(crate) mod rivals;
 pub(crate) mod ruler;
 pub(crate) mod second;

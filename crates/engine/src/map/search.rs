@@ -1,7 +1,7 @@
 //! What a search gave, so far or at its end.
 
 use model::{ColumnId, Model};
-use record::results::{SearchReport, SolutionEntry, Status};
+use record::results::{ConflictLevel, ConflictReport, SearchReport, SolutionEntry, Status};
 
 use super::{finite, status, tidy};
 
@@ -42,6 +42,21 @@ pub(crate) fn nothing_searched(why: &str) -> SearchReport {
         solution: Vec::new(),
         checked: false,
         stopped: Some(why.to_owned()),
+    }
+}
+
+/// The report of families in conflict.
+pub(crate) fn conflict_report(model: &Model, found: &tree::ConflictResult) -> ConflictReport {
+    let families = found.families.iter();
+    ConflictReport {
+        families: families.map(|id| model.families()[id.index()].name.clone()).collect(),
+        level: match found.certainty {
+            tree::Certainty::Smallest => ConflictLevel::Smallest,
+            tree::Certainty::Irreducible => ConflictLevel::Irreducible,
+            tree::Certainty::Undecided => ConflictLevel::Undecided,
+        },
+        nodes: found.nodes,
+        trials: found.trials,
     }
 }
 

@@ -80,6 +80,12 @@ fn replies_come_back_with_their_empty_fields() {
     for reply in [
         Reply::Root(Box::new(root())),
         Reply::Done(Box::new(search())),
+        Reply::Conflict(crate::results::ConflictReport {
+            families: vec!["enter".to_owned(), "order".to_owned()],
+            level: crate::results::ConflictLevel::Smallest,
+            nodes: 431,
+            trials: 4,
+        }),
         Reply::Batch(vec![Event::Bound { bound: 1.0, nodes: 2 }]),
         Reply::Failed(failed),
         Reply::Acted(Box::new(Acted {

@@ -92,8 +92,14 @@ fn an_unbounded_root_ends_the_search() {
     let x = builder.column(&[], &free).unwrap();
     let y = builder.column(&[], &free).unwrap();
     builder.row(&[], row(&[(x, 1), (y, -1)], None, Some(2))).unwrap();
-    let (events, summary) = run(&Rc::new(builder.build()), &Settings::default(), u64::MAX);
+    let model = Rc::new(builder.build());
+    let (events, summary) = run(&model, &Settings::default(), u64::MAX);
     assert_eq!((summary.status, summary.bound, summary.checked), (Status::Unbounded, None, false));
+    let mut search = Search::new(model, Settings::default());
+    finish(&mut search, 3);
+    // Along the ray the row holds on and the objective rises: y alone, or x and y alike.
+    let ray = &search.root().unwrap().ray;
+    assert!(!ray.is_empty() && ray.iter().all(|(_, step)| *step == 1.0), "{ray:?}");
     assert!(events.iter().any(|e| matches!(e, Event::Solved { state: NodeState::Unbounded, .. })));
 }
 

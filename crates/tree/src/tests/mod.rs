@@ -1,6 +1,7 @@
 //! Tests of the whole search against enumeration and known trees.
 
 mod acts;
+mod conflict;
 mod cycles;
 mod endings;
 mod enumeration;

@@ -35,3 +35,6 @@ mod editing;
 
 #[path = "page/looks.rs"]
 mod looks;
+
+#[path = "page/mistakes.rs"]
+mod mistakes;

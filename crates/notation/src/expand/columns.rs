@@ -5,7 +5,7 @@ use std::collections::BTreeMap;
 
 use model::{ColumnSpec, Number};
 
-use super::{Expansion, Stage, is_arrow};
+use super::{Counted, Expansion, Stage, is_arrow};
 use crate::diagnostic::{rows as message, size};
 use crate::evaluate::{Element, Evaluated, Found, fail};
 use crate::plan::{Bounding, Domain, Variable};
@@ -75,6 +75,11 @@ impl Expansion {
             self.stage = Stage::Columns { variable: variable + 1, domain: 0 };
             return Ok(());
         };
+        if self.steps == 0 {
+            let (limit, span) = (self.limits.nonzeros, line.span);
+            let counted = Counted { name: &found.name, noun: "columns", limit, span };
+            self.refuse_too_many(&line.steps, counted)?;
+        }
         while *budget > 0 {
             match self.next_tuple(&line.steps, &found.name, budget)? {
                 Found::Tuple(_) => self.draft_column(line)?,

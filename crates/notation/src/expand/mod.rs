@@ -3,6 +3,7 @@
 //! Columns first, variable by variable; then the objective; then the rows, family by family.
 //! Every column and row keeps its index tuple.
 
+mod closed_form;
 mod columns;
 mod conditions;
 mod rows;
@@ -47,6 +48,16 @@ pub enum Progress {
     Working,
     /// Ready for [`Expansion::finish`].
     Finished,
+}
+
+/// What is counted before it is written.
+#[derive(Debug, Clone, Copy)]
+struct Counted<'n> {
+    name: &'n str,
+    /// "rows", "columns", "terms".
+    noun: &'static str,
+    limit: usize,
+    span: crate::place::Span,
 }
 
 /// What is being written.
@@ -247,6 +258,24 @@ impl Expansion {
         Ok(found)
     }
 
+    /// Refuses what has more index tuples than may be written, before any is visited.
+    fn refuse_too_many(&mut self, steps: &[Step], what: Counted<'_>) -> Evaluated<()> {
+        self.evaluator.start_work();
+        let form = closed_form::closed_form(steps, &self.evaluator, &mut self.env);
+        match form {
+            Some(form) if form.count > what.limit as u128 => {
+                let exactly = if form.exact { "" } else { "at least " };
+                crate::evaluate::fail(size::tuples(
+                    what.name,
+                    &format!("{exactly}{} = {} {}", form.words, grouped(form.count), what.noun),
+                    &grouped(what.limit as u128),
+                    what.span,
+                ))
+            }
+            _ => Ok(()),
+        }
+    }
+
     /// One piece of one term of the objective.
     fn objective(&mut self, term: usize, budget: &mut u64) -> Evaluated<()> {
         let plan = std::rc::Rc::clone(&self.evaluator.plan);
@@ -260,6 +289,11 @@ impl Expansion {
             self.stage = self.objective_stage(term + 1);
             return Ok(());
         };
+        if self.steps == 0 {
+            let limit = self.limits.nonzeros * STEPS_PER_NONZERO as usize;
+            let span = plan.objective_span;
+            self.refuse_too_many(steps, Counted { name: "objective", noun: "terms", limit, span })?;
+        }
         while *budget > 0 {
             match self.next_tuple(steps, "objective", budget)? {
                 Found::Tuple(_) => self.add_costs(body, &sign, budget)?,
@@ -339,19 +373,18 @@ fn single_set(values: &Option<crate::evaluate::Values>) -> Option<Vec<Element>> 
     }
 }
 
-/// The number of tuples of steps that have no condition, where each set is the same for every
-/// tuple; `None` where that is not so.
-fn count(steps: &[Step], evaluator: &Evaluator, env: &mut Environment) -> Option<u128> {
-    let mut product = 1_u128;
-    for step in steps {
-        let Step::Over { pattern, set, .. } = step else { return None };
-        let bare = pattern.iter().all(|p| matches!(p, crate::plan::Pattern::Bind(_)));
-        let closed = matches!(set, Node::Once(..))
-            || matches!(set, Node::Symbol(_, indices, _) if indices.is_empty());
-        if !bare || !closed {
-            return None;
-        }
-        product = product.saturating_mul(evaluator.set(set, env).ok()?.len() as u128);
+/// A count with its thousands apart.
+fn grouped(count: u128) -> String {
+    if count == u128::MAX {
+        return "more than 10^38".to_owned();
     }
-    Some(product)
+    let digits = count.to_string();
+    let mut text = String::new();
+    for (place, digit) in digits.chars().enumerate() {
+        if place > 0 && (digits.len() - place) % 3 == 0 {
+            text.push(',');
+        }
+        text.push(digit);
+    }
+    text
 }

@@ -2,7 +2,7 @@
 
 use model::{ColumnId, FamilyState, Number, Row};
 
-use super::{Expansion, count};
+use super::{Counted, Expansion};
 use crate::diagnostic::{rows as message, size};
 use crate::evaluate::{Evaluated, Evaluator, Found, Guard, Linear, Scale, fail};
 use crate::plan::{FamilyPlan, Node, RowPlan};
@@ -75,13 +75,10 @@ impl Expansion {
         if state == FamilyState::Out {
             return Ok(false);
         }
-        let tuples = count(&family.steps, &self.evaluator, &mut self.env);
-        match tuples {
-            Some(tuples) if tuples > self.limits.nonzeros as u128 => {
-                fail(size::rows(&family.name, tuples, self.limits.nonzeros, family.span))
-            }
-            _ => Ok(true),
-        }
+        let (limit, span) = (self.limits.nonzeros, family.span);
+        let counted = Counted { name: &family.name, noun: "rows", limit, span };
+        self.refuse_too_many(&family.steps, counted)?;
+        Ok(true)
     }
 
     fn close_family(&mut self, family: &FamilyPlan) {

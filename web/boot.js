@@ -11,13 +11,9 @@
     element.remove();
     const bytes = new Uint8Array(packed.length);
     for (let i = 0; i < packed.length; i += 1) bytes[i] = packed.charCodeAt(i);
-    const unpacked = unpackLzma(bytes);
-    let from = 0;
-    return element.dataset.lengths.split(",").map((length) => {
-      const part = unpacked.subarray(from, from + Number(length));
-      from += Number(length);
-      return part;
-    });
+    const numbers = (text) => text.split(",").map(Number);
+    const { lengths, streams } = element.dataset;
+    return joinStreams(unpackLzma(bytes), numbers(streams), numbers(lengths));
   }
 
   try {

@@ -1,4 +1,6 @@
 "use strict";
+// What the page carries, unpacked in two steps: LZMA, then the streams of crates/xtask/src/streams.rs.
+
 // LZMA, decoded: what the page carries is a third smaller than under gzip, which browsers could
 // decode by themselves. Source: I. Pavlov, "LZMA specification" (2015), public domain; the names
 // are its names. Takes a stream with the 13 bytes of the .lzma header and a known size.
@@ -162,4 +164,114 @@ function unpackLzma(packed) {
     }
   }
   return out;
+}
+
+// Puts modules together again out of streams of like bytes (crates/xtask/src/streams.rs says what
+// is in which): follows the opcodes, and fetches what belongs to each from its stream.
+function joinStreams(bytes, sizes, lengths) {
+  const [REST, OPCODE, LOCAL, I32, OFFSET, ALIGN, CALL, BRANCH, DECLARATION, BLOCK, GLOBAL, NUMBER, I64, FLOAT,
+    BRANCH_TABLE] = sizes.keys();
+  const next = sizes.map((_, stream) => sizes.slice(0, stream).reduce((sum, size) => sum + size, 0));
+  let out;
+  let at = 0;
+
+  function take(stream, count) {
+    const from = next[stream];
+    for (let i = 0; i < count; i += 1) out[at + i] = bytes[from + i];
+    at += count;
+    next[stream] = from + count;
+  }
+
+  // A number in LEB128; the value of its low 32 bits.
+  function number(stream) {
+    let from = next[stream];
+    let value = 0;
+    let shift = 0;
+    let byte;
+    do {
+      byte = bytes[from];
+      out[at] = byte;
+      value |= (byte & 0x7f) << shift;
+      shift += 7;
+      from += 1;
+      at += 1;
+    } while (byte > 0x7f);
+    next[stream] = from;
+    return value >>> 0;
+  }
+
+  function times(count, stream) {
+    for (let i = 0; i < count; i += 1) number(stream);
+  }
+
+  function operands(opcode) {
+    if (opcode >= 0x20 && opcode <= 0x22) number(LOCAL);
+    else if (opcode >= 0x28 && opcode <= 0x3e) {
+      number(ALIGN);
+      number(OFFSET);
+    } else if (opcode === 0x41) number(I32);
+    else if (opcode === 0x10 || opcode === 0xd2) number(CALL);
+    else if (opcode === 0x0c || opcode === 0x0d) number(BRANCH);
+    else if (opcode === 0x0e) times(number(BRANCH_TABLE) + 1, BRANCH_TABLE);
+    else if (opcode === 0x11) {
+      number(CALL);
+      number(NUMBER);
+    } else if (opcode === 0x1c) take(NUMBER, number(NUMBER));
+    else if (opcode === 0x42) number(I64);
+    else if (opcode === 0x43) take(FLOAT, 4);
+    else if (opcode === 0x44) take(FLOAT, 8);
+    else if (opcode === 0xfc) {
+      const more = number(OPCODE);
+      if (more > 7) times(more < 15 && more % 2 === 0 ? 2 : 1, NUMBER);
+    } else if (opcode >= 0x02 && opcode <= 0x04) number(BLOCK);
+    else if (opcode === 0x23 || opcode === 0x24) number(GLOBAL);
+    else if ([0x25, 0x26, 0x3f, 0x40, 0xd0].includes(opcode)) number(NUMBER);
+  }
+
+  // The length comes before the code and is known after it.
+  function func() {
+    const begin = at;
+    for (let groups = number(DECLARATION); groups > 0; groups -= 1) {
+      number(DECLARATION);
+      take(DECLARATION, 1);
+    }
+    for (let depth = 1; depth > 0; ) {
+      const opcode = bytes[next[OPCODE]];
+      take(OPCODE, 1);
+      if (at > out.length) throw new Error("the packed modules are damaged");
+      if (opcode >= 0x02 && opcode <= 0x04) depth += 1;
+      else if (opcode === 0x0b) depth -= 1;
+      operands(opcode);
+    }
+    const size = at - begin;
+    let width = 1;
+    while (size >>> (7 * width) > 0) width += 1;
+    out.copyWithin(begin + width, begin, at);
+    for (let i = 0; i < width; i += 1) {
+      out[begin + i] = ((size >>> (7 * i)) & 0x7f) | (i + 1 < width ? 0x80 : 0);
+    }
+    at += width;
+  }
+
+  function module(length) {
+    take(REST, 8);
+    while (at < length) {
+      const section = bytes[next[REST]];
+      take(REST, 1);
+      const size = number(REST);
+      if (section !== 10) take(REST, size);
+      else for (let functions = number(REST); functions > 0; functions -= 1) func();
+    }
+  }
+
+  return lengths.map((length) => {
+    // A function is moved by the width of its length once it is whole.
+    out = new Uint8Array(length);
+    at = 0;
+    const mark = bytes.subarray(next[REST], next[REST] + 4);
+    if (String.fromCharCode(...mark) === "\0asm") module(length);
+    else take(REST, length);
+    if (at !== length) throw new Error("the packed modules are damaged");
+    return out;
+  });
 }

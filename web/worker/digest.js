@@ -6,15 +6,15 @@ const { join } = require("node:path");
 const vm = require("node:vm");
 
 const [page, scenario, rivals, slice] = process.argv.slice(2);
-const found = readFileSync(page, "utf8").match(/id="pack" data-lengths="([^"]*)">([^<]*)</);
+const found = readFileSync(page, "utf8").match(
+  /id="pack" data-lengths="([^"]*)" data-streams="([^"]*)">([^<]*)</,
+);
 if (found === null) throw new Error(`${page} holds no packed modules`);
-const lengths = found[1].split(",").map(Number);
+const [lengths, streams] = found.slice(1, 3).map((text) => text.split(",").map(Number));
 
 vm.runInThisContext(readFileSync(join(__dirname, "../unpack.js"), "utf8"));
-const unpacked = unpackLzma(new Uint8Array(Buffer.from(found[2], "base64")));
-const [, from, to, end] = lengths.reduce((ends, length) => [...ends, ends.at(-1) + length], [0]);
-const engine = unpacked.subarray(from, to);
-const script = unpacked.subarray(to, end);
+const unpacked = unpackLzma(new Uint8Array(Buffer.from(found[3], "base64")));
+const [, engine, script] = joinStreams(unpacked, streams, lengths);
 
 vm.runInThisContext(Buffer.from(script).toString("utf8"));
 globalThis.hullwardModule = new WebAssembly.Module(engine);

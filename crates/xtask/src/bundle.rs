@@ -62,6 +62,7 @@ fn bundle(place: &Workplace) -> Result<(), Fault> {
         &Parts {
             style: &style,
             lengths: &pack.lengths,
+            streams: &pack.streams,
             pack: &pack.text,
             page_glue: &page.glue,
             boot: &format!("{unpack}\n{boot}"),

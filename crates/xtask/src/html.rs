@@ -18,6 +18,8 @@ pub(crate) struct Parts<'a> {
     pub(crate) style: &'a str,
     /// The lengths of the packed parts: page module, engine module, its script, opinion module, its script.
     pub(crate) lengths: &'a str,
+    /// The lengths of the streams that the parts were taken apart into.
+    pub(crate) streams: &'a str,
     /// The packed parts.
     pub(crate) pack: &'a str,
     /// The page module's glue, a script.
@@ -40,6 +42,7 @@ pub(crate) fn assemble(template: &str, parts: &Parts<'_>) -> Result<String, Faul
             ("policy", &policy),
             ("style", parts.style),
             ("lengths", parts.lengths),
+            ("streams", parts.streams),
             ("pack", parts.pack),
             ("page-glue", &page_glue),
             ("boot", &boot),
@@ -119,6 +122,7 @@ mod tests {
         Parts {
             style: "body { margin: 0 }",
             lengths: "1,2,3",
+            streams: "6,0",
             pack: "AAAA",
             page_glue: "let wasm_bindgen = '</script><!-- {{boot}}';",
             boot: "start();",

@@ -22,6 +22,7 @@ mod packages;
 mod parity;
 mod process;
 mod serve;
+mod streams;
 mod workplace;
 
 use std::process::ExitCode;

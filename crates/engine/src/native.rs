@@ -250,7 +250,8 @@ impl Drive {
                 | Reply::InstanceRead(_)
                 | Reply::Catalogue(_)
                 | Reply::Node(_)
-                | Reply::Checked(_) => {}
+                | Reply::Checked(_)
+                | Reply::Written(_) => {}
             }
         }
     }

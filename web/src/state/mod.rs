@@ -13,4 +13,5 @@ pub(crate) mod places;
 pub(crate) mod pointer;
 pub(crate) mod share;
 pub(crate) mod tree;
+pub(crate) mod typeset;
 pub(crate) mod words;

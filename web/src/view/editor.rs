@@ -140,21 +140,10 @@ fn written(props: &EditorProps, state: &State, hands: Option<&Hands>, text: Text
     let id = panel(props.slot.id);
     let (told, listed) = (format!("{id}-state"), format!("{id}-remarks"));
     html! {
-        <div class="editor" id={panel(id)} role="group" aria-label={format!("Notation of {}", props.letter)} data-testid="editor">
-            <div>
-                { heading(&state.draft, &change) }
-                <ScriptBox
-                    id={text_box(id)} label={format!("Notation of {}", props.letter)}
-                    text={state.draft.text.clone()} pieces={(*coloured).clone()}
-                    invalid={state.is_wrong()} described_by={format!("{told} {listed}")}
-                    area={area.clone()} typed={typed.clone()} enter={enter.clone()}
-                />
-                { buttons(props, &state, &enter, hands.as_ref()) }
-            </div>
         <div>
             { heading(&state.draft, &text.change) }
             <ScriptBox
-                id={format!("{id}-text")} label={format!("Notation of {}", props.letter)}
+                id={text_box(props.slot.id)} label={format!("Notation of {}", props.letter)}
                 text={state.draft.text.clone()} pieces={text.pieces}
                 invalid={state.is_wrong()} described_by={format!("{told} {listed}")}
                 area={text.area.clone()} typed={typed.clone()} enter={enter.clone()}

@@ -54,6 +54,12 @@ impl Point {
         if plain.worst() < simple.worst() { plain } else { simple }
     }
 
+    /// Checks a point that is exact already. `O(non-zeros)` rational operations.
+    #[must_use]
+    pub fn of_exact(model: &Model, x: Vec<Number>) -> Self {
+        Self::checked(model, x.into_iter().map(Some).collect())
+    }
+
     /// The largest amount by which a row or bound is violated; 0 when none is.
     #[must_use]
     pub fn worst(&self) -> Number {

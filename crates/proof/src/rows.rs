@@ -65,6 +65,12 @@ impl ExactRows {
     /// Scales the objective and the rows of `model` that are in. `O(non-zeros)`.
     #[must_use]
     pub fn new(model: &Model) -> Self {
+        Self::of(model, |row| model.row_is_in(row))
+    }
+
+    /// Scales the objective and the written rows that `wanted` names. `O(non-zeros)`.
+    #[must_use]
+    pub fn of(model: &Model, wanted: impl Fn(RowId) -> bool) -> Self {
         let exact = |id: model::NumberId| model.numbers().exact(id).clone();
         let costs: Vec<Number> = model.columns().iter().map(|c| exact(c.cost)).collect();
         let cost_scale = common_denominator(costs.iter());
@@ -84,7 +90,7 @@ impl ExactRows {
             wide: BTreeMap::new(),
         };
         let written = (0..model.row_count()).map(RowId::from_index);
-        for row in written.filter(|&row| model.row_is_in(row)) {
+        for row in written.filter(|&row| wanted(row)) {
             rows.add(&model.row(row));
         }
         rows.implied = implied::bounds(&rows);

@@ -7,7 +7,7 @@ use model::ColumnId;
 use crate::event::{Event, NodeId};
 use crate::relaxation::{Addition, RowOrigin, direction};
 use crate::search::{Incumbent, Job, Progress, Purpose, Search};
-use crate::solution::{Solution, Verdict};
+use crate::solution::{Completed, Solution, Verdict};
 use crate::target::signed;
 
 /// How near to the cut-off the first solution may be; relative to 1 + its size.
@@ -55,6 +55,10 @@ impl Search {
     pub(crate) fn propose(&mut self) -> Option<Progress> {
         let x = &self.hand.as_ref()?.point.as_ref()?.x;
         match self.checker.check(self.rounds.separators(), x) {
+            Verdict::Solution(solution) if solution.member && !solution.exact => {
+                let rounded = self.checker.rounded(x);
+                self.complete(&rounded, Purpose::Relaxation)
+            }
             Verdict::Solution(solution) => self.take(solution, Purpose::Relaxation),
             Verdict::Violates(violated) => self.tighten(Addition {
                 origin: RowOrigin::Member { family: violated.family, subset: violated.subset },
@@ -132,10 +136,17 @@ impl Search {
     pub(crate) fn completed(
         &mut self,
         purpose: Purpose,
-        point: Option<&[f64]>,
+        point: Option<Completed>,
     ) -> Option<Progress> {
         self.job = Job::None;
-        let verdict = point.map(|x| self.checker.check(self.rounds.separators(), x));
+        let separators = self.rounds.separators();
+        let mut verdict = point.map(|x| self.checker.check_completed(separators, x));
+        let own = self.hand.as_ref().and_then(|hand| hand.point.as_ref());
+        if let (Purpose::Relaxation, Some(own)) = (purpose, own)
+            && !matches!(verdict, Some(Verdict::Solution(_)))
+        {
+            verdict = Some(self.checker.check(separators, &own.x));
+        }
         if purpose == Purpose::Rounding {
             self.roundings.note(matches!(verdict, Some(Verdict::Solution(_))));
         }

@@ -309,7 +309,8 @@ pub(crate) fn float_bounds(model: &Model, column: ColumnId) -> (f64, f64) {
     (lower, upper)
 }
 
-fn model_bounds(model: &Model, column: ColumnId) -> proof::Bounds {
+/// The bounds of a column in the model, exactly.
+pub(crate) fn model_bounds(model: &Model, column: ColumnId) -> proof::Bounds {
     let column = &model.columns()[column.index()];
     let exact = |id: Option<model::NumberId>| id.map(|n| model.numbers().exact(n).clone());
     (exact(column.lower), exact(column.upper))

@@ -2,20 +2,26 @@
 //!
 //! Whole columns are rounded to the nearest whole number and everything is evaluated in rationals.
 //! Where that breaks a row of a model with continuous columns, these are solved anew with the
-//! whole columns fixed. Families over subsets are asked by their exact membership check.
+//! whole columns fixed, exactly where floats would still break a row. Families over subsets are asked by their exact membership check.
 
 use std::rc::Rc;
 
 use lp::{Col, Limits, Outcome, Progress, Simplex};
 use model::{ColumnId, Model, Number, RowId, nearest_f64};
-use proof::Point;
+use proof::{Budget, ExactRows, Point, Wish};
 use separate::{Membership, Separator, Violated};
 
-use crate::relaxation::{float_bounds, is_meant, problem};
+use crate::proving::Proving;
+use crate::relaxation::{
+    float_bounds, float_entries, is_meant, model_bounds, problem, residual_problem,
+};
 
 /// By how much a row may be broken in a solution with continuous columns; absolute, in the
 /// units of the row. Such a solution counts as unchecked.
 const FEASIBILITY: f64 = 1e-6;
+
+/// What the exact solution of a continuous part may cost.
+const EXACT: Budget = Budget { ticks: 40_000_000, bits: 8_000 };
 
 /// A point that is a solution.
 #[derive(Debug, Clone)]
@@ -41,12 +47,23 @@ pub(crate) enum Verdict {
     Broken,
 }
 
+/// What the continuous part gave: floats, or, where these broke a row, an exact point.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) enum Completed {
+    Float(Vec<f64>),
+    Exact(Vec<Number>),
+}
+
 /// Checks points of one model.
 #[derive(Debug)]
 pub(crate) struct Checker {
     model: Rc<Model>,
     /// The continuous part, made when it is first needed.
     simplex: Option<Simplex>,
+    /// Its rows in exact arithmetic, made when they are first needed.
+    rows: Option<ExactRows>,
+    /// Its exact solution under way.
+    proving: Option<Box<Proving>>,
     fixed: Vec<ColumnId>,
     continuous: bool,
     /// Rows without continuous columns.
@@ -67,6 +84,8 @@ impl Checker {
         Self {
             model: Rc::clone(model),
             simplex: None,
+            rows: None,
+            proving: None,
             fixed: Vec::new(),
             continuous: columns.iter().any(|c| !c.integer),
             whole_rows: rows.filter(whole).collect(),
@@ -100,7 +119,28 @@ impl Checker {
                 Membership::Unknown => member = false,
             }
         }
-        let point = Point::new(&self.model, &rounded);
+        self.judged(Point::new(&self.model, &rounded), member)
+    }
+
+    /// Checks what the continuous part gave.
+    pub(crate) fn check_completed(&self, separators: &[Separator], x: Completed) -> Verdict {
+        let x = match x {
+            Completed::Float(x) => return self.check(separators, &x),
+            Completed::Exact(x) => x,
+        };
+        let near: Vec<f64> = x.iter().map(nearest_f64).collect();
+        let mut member = true;
+        for separator in separators {
+            match separator.membership(&near) {
+                Membership::Satisfied => {}
+                Membership::Violated(violated) => return Verdict::Violates(violated),
+                Membership::Unknown => member = false,
+            }
+        }
+        self.judged(Point::of_exact(&self.model, x), member)
+    }
+
+    fn judged(&self, point: Point, member: bool) -> Verdict {
         let exact = point.violations.is_empty();
         if !exact && (!self.continuous || nearest_f64(&point.worst()) > FEASIBILITY) {
             return Verdict::Broken;
@@ -147,11 +187,15 @@ impl Checker {
             self.fixed.push(column);
         }
         simplex.start(Limits::default());
+        self.proving = None;
         true
     }
 
     /// Works on for about `ticks`: `None` while there is more to do, then the point, if any.
-    pub(crate) fn advance(&mut self, ticks: u64) -> Option<Option<Vec<f64>>> {
+    pub(crate) fn advance(&mut self, ticks: u64) -> Option<Option<Completed>> {
+        if self.proving.is_some() {
+            return self.advance_proof(ticks).then(|| self.proved());
+        }
         let simplex = self.simplex.as_mut()?;
         let before = simplex.stats();
         let progress = simplex.advance(ticks);
@@ -161,10 +205,57 @@ impl Checker {
         if progress == Progress::Working {
             return None;
         }
-        Some(match simplex.outcome() {
-            Some(Outcome::Optimal(solution)) => Some(solution.x.clone()),
-            _ => None,
-        })
+        let Some(Outcome::Optimal(solution)) = simplex.outcome() else { return Some(None) };
+        let x = solution.x.clone();
+        let x = self.rounded(&x);
+        self.ticks += x.len() as u64;
+        if Point::new(&self.model, &x).violations.is_empty() {
+            return Some(Some(Completed::Float(x)));
+        }
+        self.begin_proof();
+        None
+    }
+
+    /// Begins to solve the continuous part exactly, from its final basis.
+    fn begin_proof(&mut self) {
+        let Some(simplex) = &self.simplex else { return };
+        let model = &self.model;
+        if self.rows.is_none() {
+            self.rows = Some(ExactRows::of(model, |row| is_meant(model, row)));
+        }
+        let mut bounds: Vec<proof::Bounds> = (0..model.columns().len())
+            .map(|j| model_bounds(model, ColumnId::from_index(j)))
+            .collect();
+        for &column in &self.fixed {
+            let value = Number::try_from(simplex.bounds(Col(column.0)).0).ok();
+            bounds[column.index()] = (value.clone(), value);
+        }
+        let proving = Proving::new(bounds, simplex.basis(), Wish::Optimum(None), EXACT);
+        self.proving = Some(Box::new(proving));
+    }
+
+    fn advance_proof(&mut self, ticks: u64) -> bool {
+        let (Some(proving), Some(rows)) = (&mut self.proving, &self.rows) else { return true };
+        let model = &self.model;
+        let written = || (0..model.row_count()).map(RowId::from_index);
+        let entries = || written().filter(|&row| is_meant(model, row));
+        let problem = |residual: &proof::Residual| {
+            residual_problem(residual, entries().map(|row| float_entries(model, row))).ok()
+        };
+        let before = proving.ticks();
+        let done = proving.advance(rows, problem, ticks);
+        self.ticks += proving.ticks() - before;
+        done
+    }
+
+    /// The exact point, or the floats where there is none.
+    fn proved(&mut self) -> Option<Completed> {
+        let exact = self.proving.take().and_then(|proving| proving.certifier.point());
+        match (exact, self.simplex.as_ref()?.outcome()) {
+            (Some(x), _) => Some(Completed::Exact(x)),
+            (None, Some(Outcome::Optimal(solution))) => Some(Completed::Float(solution.x.clone())),
+            (None, _) => None,
+        }
     }
 
     /// Non-zeros touched so far.
@@ -226,15 +317,42 @@ mod tests {
                 break point.unwrap();
             }
         };
-        assert!(matches!(checker.check(&[], &point), Verdict::Solution(s) if s.exact));
+        assert!(matches!(checker.check_completed(&[], point), Verdict::Solution(s) if s.exact));
         assert!(checker.begin(&[(ColumnId(0), 9.0)]));
         let point = loop {
             if let Some(point) = checker.advance(1) {
                 break point;
             }
         };
-        let outside = point.is_none_or(|x| matches!(checker.check(&[], &x), Verdict::Broken));
+        let outside =
+            point.is_none_or(|x| matches!(checker.check_completed(&[], x), Verdict::Broken));
         assert!(outside, "9 is outside the bounds of x");
+    }
+
+    /// min y, 9973 y = 13 x + 5, x whole: no simple fraction is near y at x = 1, and no float is
+    /// 18/9973, so that floats break the equation.
+    #[test]
+    fn a_continuous_part_that_floats_cannot_hold_is_exact() {
+        let mut builder = ModelBuilder::new("primes", Sense::Minimise);
+        let x = builder.column(&[], &spec((0, 4), 0, true)).unwrap();
+        let y = builder.column(&[], &spec((0, 4), 1, false)).unwrap();
+        builder.row(&[], row(&[(x, -13), (y, 9_973)], Some(5), Some(5))).unwrap();
+        let mut checker = Checker::new(&Rc::new(builder.build()));
+        let Verdict::Solution(near) = checker.check(&[], &[1.0, 18.0 / 9_973.0]) else {
+            panic!("within the tolerance")
+        };
+        assert!(!near.exact);
+        assert!(checker.begin(&[(ColumnId(0), 1.0)]));
+        let point = loop {
+            if let Some(point) = checker.advance(1) {
+                break point.unwrap();
+            }
+        };
+        let Verdict::Solution(solution) = checker.check_completed(&[], point) else {
+            panic!("a solution")
+        };
+        assert_eq!(solution.value, Number::from(18) / Number::from(9_973));
+        assert!(solution.exact);
     }
 
     #[test]

@@ -41,7 +41,7 @@ impl Search {
             Job::Complete(purpose) => {
                 let purpose = *purpose;
                 let point = self.checker.advance(ticks)?;
-                self.completed(purpose, point.as_deref())
+                self.completed(purpose, point)
             }
             Job::Tour(tour) => {
                 if tour.advance(ticks) {

@@ -1,5 +1,5 @@
-//! MPS files of others, read by our reader: the value of the relaxation against the published
-//! one and HiGHS, integer optima by HiGHS, and the same after writing and reading again.
+//! MPS files of others, read by our reader: the value of the relaxation, as found and exactly,
+//! against the published one and HiGHS, integer optima by HiGHS, and the same after writing and reading again.
 //!
 //! Files: netlib lp/data (Gay, COAL Newsletter 13 (1985) 10-12), MIPLIB 3 (Bixby, Ceria, McZeal
 //! and Savelsbergh, Optima 58 (1998) 12-15), and the check instances of HiGHS. Values with their
@@ -14,7 +14,7 @@ use std::rc::Rc;
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::round_trip::root;
 use hullward_tests_reference::{agree, open_data};
-use model::{Model, mps};
+use model::{Model, mps, nearest_f64};
 use serde_json::Value;
 use tree::Status;
 
@@ -72,6 +72,11 @@ fn check_relaxation(name: &str, model: &Rc<Model>, wanted: &Value, tolerance: f6
     assert!(agree(bound, wanted, tolerance), "{name}: {bound} for {wanted}");
     let Verdict::Optimal(value) = highs(model, &[], false) else { panic!("{name}") };
     assert!(agree(bound, value, 1e-7), "{name}: {bound}, HiGHS {value}");
+    let exact = root.checked_bound.filter(|_| root.exact).unwrap_or_else(|| panic!("{name}"));
+    let exact = nearest_f64(&exact);
+    assert!(agree(exact, wanted, tolerance), "{name}: exactly {exact}, for {wanted}");
+    assert!(agree(exact, bound, 1e-9), "{name}: exactly {exact}, found {bound}");
+    assert!(agree(exact, value, 1e-7), "{name}: exactly {exact}, HiGHS {value}");
 }
 
 fn check_status(name: &str, model: &Rc<Model>, wanted: &Value) {
@@ -80,7 +85,9 @@ fn check_status(name: &str, model: &Rc<Model>, wanted: &Value) {
         "unbounded" => (Status::Unbounded, Verdict::Unbounded),
         other => panic!("{name}: {other}"),
     };
-    assert_eq!(root(model).status, status, "{name}");
+    let root = root(model);
+    assert_eq!(root.status, status, "{name}");
+    assert!(root.checked || status == Status::Unbounded, "{name}: the ray is not proved");
     // Presolve may find that there is no optimum without saying for which of the two reasons.
     let said = highs(model, &[], false);
     assert!(said == verdict || said == Verdict::Silent, "{name}: {said:?}");

@@ -46,7 +46,7 @@ impl DualBound {
 }
 
 /// Scales multipliers so that the largest is 1, or all are whole where a small factor does that.
-fn make_whole(multipliers: &mut [f64]) {
+pub(crate) fn make_whole(multipliers: &mut [f64]) {
     let largest = largest(multipliers.iter().copied());
     if largest == 0.0 {
         return;

@@ -9,6 +9,8 @@
 
 pub mod golden;
 pub mod independent;
+pub mod kernel;
+pub mod random_lp;
 pub mod round_trip;
 pub mod theory;
 

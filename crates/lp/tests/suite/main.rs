@@ -12,6 +12,8 @@
 //! | `metamorphic` | the same problem in other words |
 //! | `numerics` | coefficients of very different size |
 //! | `search` | tableau rows, bases set aside, bounds on the way, condition |
+//! | `presolved` | presolve and the way back against the problem as given |
+//! | `work` | iterations and nonzeros touched against a held list |
 //! | `edges` | empty, fixed, crossed, free, refused |
 //!
 //! Each outcome is checked by [`shadow::Shadow`], which keeps its own copy of the problem.
@@ -27,9 +29,11 @@ mod limits;
 mod metamorphic;
 mod numerics;
 mod oracle;
+mod presolved;
 mod published;
 mod random;
 mod search;
 mod shadow;
 mod slicing;
 mod warm;
+mod work;

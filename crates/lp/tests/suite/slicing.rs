@@ -3,7 +3,7 @@
 use crate::families::{KINDS, generate};
 use crate::instances::{multi_commodity, single_commodity};
 use crate::shadow::{Shadow, new_row};
-use hullward_lp::{Col, Limits, Progress};
+use hullward_lp::{Col, Limits, Progress, Simplex};
 
 fn check(shadow: &Shadow, limits: Limits, slices: &[u64], name: &str) {
     let mut whole = shadow.simplex();
@@ -69,6 +69,34 @@ fn an_abandoned_solve_leaves_no_trace() {
             let found = shadow.verdict(simplex.solve(Limits::default()), &name);
             let cold = shadow.verdict(shadow.simplex().solve(Limits::default()), &name);
             assert!(found.agrees(cold, 1e-8), "{name}: {found:?}, cold {cold:?}");
+        }
+    }
+}
+
+/// Interrupted once after k units of work, for every k that the solve has, then resumed: the same
+/// bytes as without interruption, and a copy taken at the interruption goes on to them as well.
+#[test]
+fn an_interruption_at_any_unit_of_work_changes_no_byte() {
+    for kind in KINDS {
+        for seed in [7, 8] {
+            let shadow = generate(kind, seed);
+            let mut whole = shadow.simplex();
+            whole.solve(Limits::default());
+            let bytes = |solver: &Simplex| {
+                format!("{:?} {:?} {:?}", solver.outcome(), solver.stats(), solver.basis())
+            };
+            let expected = bytes(&whole);
+            for ticks in 0..=whole.stats().ticks {
+                let mut stopped = shadow.simplex();
+                stopped.start(Limits::default());
+                if stopped.advance(ticks) == Progress::Working {
+                    let mut copy = stopped.clone();
+                    while copy.advance(1) == Progress::Working {}
+                    assert_eq!(bytes(&copy), expected, "{kind} {seed}: copied after {ticks}");
+                }
+                while stopped.advance(u64::MAX) == Progress::Working {}
+                assert_eq!(bytes(&stopped), expected, "{kind} {seed}: stopped after {ticks}");
+            }
         }
     }
 }

@@ -71,7 +71,8 @@ fn the_closed_form_is_the_number_of_rows_or_less() {
 fn a_milliard_of_rows_is_refused_before_the_first() {
     let labels: Vec<String> = (0..1_000).map(|k| format!("P{k}")).collect();
     let blocks = format!("V\n{}\n\nA by i, j\nP0 P1\n\nr = P0\n", labels.join("\n"));
-    let instance = instance::read(&blocks, None).instance.expect("blocks");
+    let reading = instance::read(&blocks, Some(instance::Reader::Blocks));
+    let instance = reading.instance.unwrap_or_else(|| panic!("{:?}", reading.complaints));
     let found =
         expanded(&text("i, j, k ∈ V : i ≠ j, j ≠ k, i ≠ k"), &instance, 2_000_000).unwrap_err();
     assert_eq!(

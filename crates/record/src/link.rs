@@ -35,7 +35,10 @@ impl fmt::Display for LinkError {
     fn fmt(&self, formatter: &mut fmt::Formatter<'_>) -> fmt::Result {
         formatter.write_str(match self {
             Self::NoScenario => "the link holds no scenario: it has no part that begins with #s1.",
-            Self::Base64 => "the link is damaged: copy it again, to its last character",
+            Self::Base64 => {
+                "the link was cut short or damaged: copy it again, to its last character, or ask \
+                 for the file"
+            }
             Self::Deflate => {
                 "the link was cut short or damaged: copy it again, or ask for the file"
             }

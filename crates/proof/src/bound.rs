@@ -5,6 +5,7 @@ use model::Number;
 use crate::kernel::{Objective, Sides, Sum, sum};
 use crate::mend::mended;
 use crate::multipliers::{Multipliers, on_grid, snapped};
+use crate::project::projected;
 use crate::rows::{Bounds, ExactRows};
 
 /// A bound on the objective over the points of the relaxation, proved in exact arithmetic:
@@ -80,8 +81,9 @@ pub(crate) fn closed(
             Sum::Open(_) => None,
         }
     });
-    let mended = mended(rows, objective, bounds, (rounding, open));
-    implied.flatten().max(mended)
+    let mended = mended(rows, objective, bounds, (rounding.clone(), open.clone()));
+    let best = implied.flatten().max(mended);
+    best.or_else(|| projected(rows, objective, bounds, (&rounding, &open)))
 }
 
 /// Whether `bounds` allows nothing that the model's own bounds do not, so that what follows

@@ -36,6 +36,7 @@ mod lifting;
 mod mend;
 mod multipliers;
 mod point;
+mod project;
 mod ray;
 mod refine;
 mod rows;

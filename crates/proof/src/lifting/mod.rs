@@ -6,7 +6,7 @@
 //! under pᵏ.
 
 mod factor;
-mod field;
+pub(crate) mod field;
 mod reconstruct;
 mod singletons;
 mod square;

@@ -234,3 +234,35 @@ fn points_are_checked_exactly() {
     assert_eq!(names, expected.map(|(name, amount)| (name, Number::from(amount))));
     assert_eq!(violations(&model, &[f64::NAN, 0.0])[0].place, Place::Value(ColumnId(0)));
 }
+
+/// min u + v with free a, b, c in a ring of equations a + b = u, b + c = v, a + c = 4 and
+/// u + v ≥ 1, u, v ≥ 0: optimum 1. Noise in the multipliers opens all three free columns, and a row
+/// mended for one of them opens the next: only all of them together can be closed.
+#[test]
+fn free_columns_that_share_rows_are_closed_together() {
+    let mut b = ModelBuilder::new("ring", Sense::Minimise);
+    for _ in 0..3 {
+        b.column(&[], &column(None, None, Number::ZERO, false)).unwrap();
+    }
+    for _ in 0..2 {
+        b.column(&[], &column(Some(0), None, Number::ONE, false)).unwrap();
+    }
+    b.family("ring", FamilyState::In, false);
+    let one = |column| (column, Number::ONE);
+    let minus = |column| (column, -Number::ONE);
+    let zero = Some(Number::ZERO);
+    b.row(&[], row(&[one(0), one(1), minus(3)], zero.clone(), zero.clone())).unwrap();
+    b.row(&[], row(&[one(1), one(2), minus(4)], zero.clone(), zero)).unwrap();
+    let four = Some(Number::from(4));
+    b.row(&[], row(&[one(0), one(2)], four.clone(), four)).unwrap();
+    b.row(&[], row(&[one(3), one(4)], Some(Number::ONE), None)).unwrap();
+    let model = b.build();
+    let (rows, all) = (ExactRows::new(&model), bounds(&model));
+    for y in [[0.0, 0.0, 0.0, 1.0], [1e-4, -2e-4, 3e-4, 0.999], [1e-3, 7e-4, -2e-4, 0.9]] {
+        let proved = bound(&rows, &all, &y).unwrap();
+        assert!(proved <= Number::ONE && proved > ratio(8, 10), "{y:?} gave {proved}");
+    }
+    let mut tight = all;
+    (tight[3], tight[4]) = ((None, Some(ratio(1, 4))), (None, Some(ratio(1, 4))));
+    assert!(infeasible(&rows, &tight, &[1e-4, -2e-4, 3e-4, 0.999]));
+}

@@ -58,7 +58,7 @@ fn values<'a>(
 ) -> impl Iterator<Item = Number> + 'a {
     let fits = bounds.len() == rows.column_count() && y.len() <= rows.row_count();
     let roundings = [snapped, on_grid].into_iter().filter(move |_| fits);
-    roundings.filter_map(move |round| closed(rows, objective, bounds, round(rows, objective, y)?))
+    roundings.filter_map(move |round| closed(rows, objective, bounds, &round(rows, objective, y)?))
 }
 
 /// The sum, with the columns that make it −∞ dealt with: by other multipliers, and by
@@ -67,23 +67,23 @@ pub(crate) fn closed(
     rows: &ExactRows,
     objective: Objective,
     bounds: &[Bounds],
-    rounding: Multipliers,
+    rounding: &Multipliers,
 ) -> Option<Number> {
     let sides = Sides { given: bounds, implied: None };
-    let open = match sum(rows, objective, sides, &rounding) {
+    let open = match sum(rows, objective, sides, rounding) {
         Sum::Bound(value) => return Some(value),
         Sum::Open(open) => open,
     };
     let implied = within_model(rows, bounds).then(|| {
         let sides = Sides { given: bounds, implied: Some(&rows.implied) };
-        match sum(rows, objective, sides, &rounding) {
+        match sum(rows, objective, sides, rounding) {
             Sum::Bound(value) => Some(value),
             Sum::Open(_) => None,
         }
     });
     let mended = mended(rows, objective, bounds, (rounding.clone(), open.clone()));
     let best = implied.flatten().max(mended);
-    best.or_else(|| projected(rows, objective, bounds, (&rounding, &open)))
+    best.or_else(|| projected(rows, objective, bounds, (rounding, &open)))
 }
 
 /// Whether `bounds` allows nothing that the model's own bounds do not, so that what follows

@@ -266,7 +266,7 @@ impl Certifier {
         let multipliers = system.multipliers(rows, found);
         self.ticks += rows.nonzeros() as u64;
         let clipped = clipped(rows, &multipliers);
-        let value = closed(rows, Objective::Costs, &self.bounds, clipped);
+        let value = closed(rows, Objective::Costs, &self.bounds, &clipped);
         self.bound = self.bound.take().max(value);
         self.multipliers = Some(multipliers);
         if self.reaches(rows) { Stage::Done } else { self.place(rows) }
@@ -342,7 +342,7 @@ impl Certifier {
         for multipliers in [multipliers.negated(), multipliers] {
             self.ticks += rows.nonzeros() as u64;
             let clipped = clipped(rows, &multipliers);
-            let value = closed(rows, Objective::Nothing, &self.bounds, clipped);
+            let value = closed(rows, Objective::Nothing, &self.bounds, &clipped);
             if value.is_some_and(|value| value > Number::ZERO) {
                 self.refuted = true;
                 self.multipliers = Some(multipliers);
@@ -372,7 +372,7 @@ impl ExactMultipliers {
         }
         let mut own = clipped(rows, &self.0);
         own.values.resize(rows.row_count(), IBig::ZERO);
-        closed(rows, Objective::Costs, bounds, own).map(|value| rows.as_given(value))
+        closed(rows, Objective::Costs, bounds, &own).map(|value| rows.as_given(value))
     }
 
     /// The bits of the largest number.

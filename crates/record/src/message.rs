@@ -4,8 +4,8 @@
 use serde::{Deserialize, Serialize};
 
 use crate::event::{Branching, Event, NodeNumber, NodeState};
-use crate::results::{ConflictReport, ErrorReport, FamilyReport, RootReport, SearchReport};
 use crate::handover::{Form, Written};
+use crate::results::{ConflictReport, ErrorReport, FamilyReport, RootReport, SearchReport};
 use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
 use crate::typeset::Typeset;
 

@@ -17,8 +17,6 @@ mod nodes;
 
 #[path = "page/drawings.rs"]
 mod drawings;
-#[path = "page/second.rs"]
-mod second;
 
 #[path = "page/second.rs"]
 mod second;

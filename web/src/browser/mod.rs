@@ -2,8 +2,8 @@
 
 pub(crate) mod checks;
 pub(crate) mod frame;
-pub(crate) mod opinions;
 pub(crate) mod handover;
+pub(crate) mod opinions;
 pub(crate) mod run;
 pub(crate) mod session;
 pub(crate) mod share;

@@ -7,7 +7,6 @@ use record::event::NodeNumber;
 use record::message::{NodeDetail, Progress, RivalReport};
 use record::opinion::Opinion;
 use record::results::{ConflictReport, ErrorReport, RootReport, SearchReport, Status};
-use record::opinion::Opinion;
 use yew::Reducible;
 
 use crate::state::lane::{Lane, LaneId, Phase};

@@ -3,7 +3,6 @@
 use record::message::{Progress, RivalReport};
 use record::opinion::Opinion;
 use record::results::{ConflictReport, ErrorReport, RootReport, SearchReport};
-use record::opinion::Opinion;
 
 use crate::state::pointer::Shared;
 use crate::state::tree::Tally;

@@ -107,11 +107,11 @@ fn depot_in_labels(stops: usize) -> Rc<Model> {
         names.iter().map(|&s| builder.column(&[s], &spec((1, n), 0, false)).unwrap()).collect();
     for (name, tail) in [("leave", true), ("enter", false)] {
         builder.family(name, FamilyState::In, false);
-        for k in 0..stops {
+        for (k, &name) in names.iter().enumerate().take(stops) {
             let here =
                 pairs.iter().zip(&arcs).filter(|((i, j), _)| k == if tail { *i } else { *j });
             let entries: Vec<_> = here.map(|(_, &x)| (x, 1)).collect();
-            builder.row(&[names[k]], row(&entries, Some(1), Some(1))).unwrap();
+            builder.row(&[name], row(&entries, Some(1), Some(1))).unwrap();
         }
     }
     builder.family("order", FamilyState::In, true);

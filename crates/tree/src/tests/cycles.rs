@@ -62,8 +62,8 @@ fn cycle(model: Rc<Model>, state: NodeState) -> Cycle {
     view.cycle.unwrap_or_else(|| panic!("no cycle in {:?}", view.ray))
 }
 
-fn check(model: Rc<Model>, state: NodeState) {
-    let Cycle { stops, total } = cycle(Rc::clone(&model), state);
+fn check(model: &Rc<Model>, state: NodeState) {
+    let Cycle { stops, total } = cycle(Rc::clone(model), state);
     assert_eq!(total, whole(-3));
     let mut names: Vec<&str> = stops.iter().map(|&stop| model.labels().name(stop)).collect();
     let first = names.iter().position(|name| *name == "Ash").unwrap();
@@ -73,11 +73,11 @@ fn check(model: Rc<Model>, state: NodeState) {
 
 #[test]
 fn the_rows_of_the_ray_are_those_of_the_cycle() {
-    check(potentials(false), NodeState::Infeasible);
-    check(potentials(true), NodeState::Infeasible);
+    check(&potentials(false), NodeState::Infeasible);
+    check(&potentials(true), NodeState::Infeasible);
 }
 
 #[test]
 fn an_unbounded_flow_runs_around_the_cycle() {
-    check(flow(), NodeState::Unbounded);
+    check(&flow(), NodeState::Unbounded);
 }

@@ -8,7 +8,7 @@ use model::Model;
 use notation::{Bound, Checked, Diagnostic, Expansion, Limits, Progress, utf16_range};
 use record::message::{CheckJob, CheckReport, CheckedSize, Remark, TextEdit};
 
-use crate::map::of_diagnostic;
+use crate::map::{of_diagnostic, of_typeset};
 use crate::readings::Readings;
 
 /// Non-zeros looked at for the size: a few milliseconds. What is larger is left to its lane.
@@ -45,6 +45,7 @@ pub(crate) fn check(job: &CheckJob, readings: &mut Readings) -> CheckReport {
         variables: names(&checked.variables()),
         families: names(&checked.families()),
         size,
+        typeset: of_typeset(&job.text, &notation::typeset(&parse.tree, &job.text), &checked),
     }
 }
 
@@ -122,6 +123,25 @@ mod tests {
         assert_eq!(remark.complaint.line, 8);
         assert!(remark.complaint.message.contains('y'), "{remark:?}");
         assert!(!remark.mends.is_empty(), "{remark:?}");
+    }
+
+    #[test]
+    fn a_text_is_set_with_the_places_of_its_lines() {
+        let text = ASSIGNMENT.replace("  (enter)", "").replace("i ∈ V  (leave)", "≤ 𝔹  (leave)");
+        let report = checked(&text, TABLE);
+        let units: Vec<u16> = text.encode_utf16().collect();
+        let typed = |row: &record::typeset::TypesetRow| {
+            String::from_utf16(&units[row.start as usize..row.end as usize]).expect("whole letters")
+        };
+        let rows = &report.typeset.rows;
+        assert_eq!(rows.iter().filter(|row| row.describes).count(), 3);
+        let model: Vec<_> = rows.iter().filter(|row| !row.describes).collect();
+        let heads: Vec<&str> = model.iter().map(|row| row.head.as_str()).collect();
+        assert_eq!(heads, ["minimise", "subject to", "", ""]);
+        assert!(model[1].unread.ends_with("(leave)"), "{model:?}");
+        assert_eq!(typed(model[2]), "Σ_{i : (i,j) ∈ A} x_{i,j} = 1  ∀ j ∈ V");
+        assert_eq!((model[2].words.as_str(), model[3].words.as_str()), ("row 1", ""));
+        assert!(checked("", TABLE).typeset.rows.is_empty());
     }
 
     #[test]

@@ -4,7 +4,8 @@
 mod compare;
 
 use model::mps as format;
-use record::message::Complaint;
+use record::handover::{Form, Written};
+use record::message::{Complaint, LaneJob, Reply};
 use record::results::ErrorReport;
 use record::scenario::{Rival, Scenario};
 
@@ -74,6 +75,27 @@ pub fn latex(scenario: &Scenario, rival: usize) -> Result<HandOver, Refusal> {
     let mut handed = printed(scenario, rival, notation::latex)?;
     handed.notes.push("LaTeX needs \\usepackage{amsmath,amssymb}".to_owned());
     Ok(handed)
+}
+
+/// The answer to a page that hands a rival over.
+pub(crate) fn handed_over(form: Form, job: LaneJob) -> Reply {
+    let scenario = Scenario {
+        instance: job.instance,
+        rivals: vec![job.rival],
+        run: job.settings,
+        seed: job.seed,
+        ..Scenario::default()
+    };
+    let made = match form {
+        Form::Mps => mps(&scenario, (0, 0)),
+        Form::Latex => latex(&scenario, 0),
+        Form::Text => notation_text(&scenario, 0),
+    };
+    match made {
+        Ok(HandOver { text, notes, .. }) => Reply::Written(Box::new(Written { text, notes })),
+        Err(Refusal::Wrong(error)) => Reply::Failed(error),
+        Err(Refusal::Broken(what)) => Reply::Failed(fault("rival", what)),
+    }
 }
 
 fn printed(

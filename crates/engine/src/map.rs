@@ -14,6 +14,7 @@ mod relaxation;
 mod root;
 mod search;
 mod settings;
+mod typeset;
 
 pub(crate) use act::{act_of, acted, refused};
 pub(crate) use catalogue::catalogue_entries;
@@ -27,6 +28,7 @@ pub(crate) use relaxation::relaxation;
 pub(crate) use root::{root_report, stopped_root};
 pub(crate) use search::{nothing_searched, search_report};
 pub(crate) use settings::settings;
+pub(crate) use typeset::of_typeset;
 
 /// How a relaxation or a search ended; one that goes on is stopped for now.
 fn status(status: tree::Status) -> record::results::Status {

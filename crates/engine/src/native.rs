@@ -244,7 +244,8 @@ impl Drive {
                 | Reply::InstanceRead(_)
                 | Reply::Catalogue(_)
                 | Reply::Node(_)
-                | Reply::Checked(_) => {}
+                | Reply::Checked(_)
+                | Reply::Written(_) => {}
             }
         }
     }

@@ -7,6 +7,7 @@ use record::wire::{read_request, write_envelope};
 
 use crate::check::check;
 use crate::fault::fault;
+use crate::handover::handed_over;
 use crate::lane::Lane;
 use crate::map::catalogue_entries;
 use crate::outbox::Outbox;
@@ -89,6 +90,7 @@ impl Worker {
                 let report = check(&job, &mut self.readings);
                 self.reply(Reply::Checked(Box::new(report)));
             }
+            Request::Write(form, job) => self.reply(handed_over(form, *job)),
             Request::List => self.reply(Reply::Catalogue(catalogue_entries())),
             Request::Load(job) => {
                 self.run = job.run;

@@ -7,6 +7,7 @@
 //! | bind | [`bind()`] | that and an instance | all data found, definitions evaluated |
 //! | expand | [`Expansion`] | that | a [`model::Model`], in slices |
 //! | print | [`print()`], [`latex()`] | a tree | Unicode text or LaTeX that reads back as the same tree |
+//! | set | [`typeset()`] | a tree | rows of MathML, as a tree |
 //!
 //! Nothing here fails on any text: what is wrong comes back as [`Diagnostic`]s with a place
 //! and, where one is known, a mend. [`model()`] does all of it at once, for small things.
@@ -18,6 +19,7 @@ mod evaluate;
 mod expand;
 mod latex;
 mod lex;
+pub mod mathml;
 mod parse;
 mod place;
 mod plan;
@@ -31,6 +33,7 @@ pub use check::{Checked, check};
 pub use diagnostic::{Diagnostic, Edit, Mend, Severity};
 pub use expand::{Expansion, Limits, Progress, States};
 pub use latex::latex;
+pub use mathml::typeset;
 pub use parse::{NESTING_LIMIT, Parse, TEXT_LIMIT, parse};
 pub use place::{Span, line_column, utf16_offset, utf16_range};
 pub use print::print;

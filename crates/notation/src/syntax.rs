@@ -20,10 +20,34 @@ pub struct Formulation {
     pub statements: Vec<Line>,
     /// Words of the lines that could not be read, so that nobody complains about them twice.
     pub unread: Vec<String>,
+    /// The lines that could not be read.
+    pub unread_lines: Vec<Unread>,
     /// Where new lines can be put.
     pub ends: Ends,
     /// Whether every line could be read.
     pub complete: bool,
+}
+
+/// A part of a text.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Section {
+    /// `data`
+    Data,
+    /// `definitions`
+    Definitions,
+    /// `minimise`, `maximise`
+    Objective,
+    /// `subject to`
+    Statements,
+}
+
+/// A line that could not be read.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Unread {
+    /// The part it stands in.
+    pub section: Section,
+    /// The whole line.
+    pub span: Span,
 }
 
 /// The byte after the last line of a part, for mends that add a line.

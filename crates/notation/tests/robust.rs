@@ -11,7 +11,8 @@
 mod common;
 
 use common::{kitchen, shown};
-use hullward_notation::{Diagnostic, check, model, parse, print};
+use hullward_notation::mathml::Element;
+use hullward_notation::{Diagnostic, check, model, parse, print, typeset};
 use proptest::prelude::*;
 use std::collections::BTreeMap;
 
@@ -209,6 +210,30 @@ fn reads_back(text: &str) -> Result<(), TestCaseError> {
     Ok(())
 }
 
+/// All that is set of a text, with what holds for every element: a leaf has no children, and
+/// others have as many as their layout takes, and no text.
+fn typesets(text: &str) -> Result<String, TestCaseError> {
+    let set = typeset(&parse(text).tree, text);
+    let mut said = String::new();
+    for row in &set.rows {
+        let cells = [&row.left, &row.right, &row.quantifier];
+        for element in cells.into_iter().flatten() {
+            say(element, &mut said)?;
+        }
+        said.push_str(&row.words);
+        prop_assert!(text.get(row.span.range()).is_some());
+    }
+    Ok(said)
+}
+
+fn say(element: &Element, said: &mut String) -> Result<(), TestCaseError> {
+    let count = element.children.len();
+    prop_assert!(element.tag.arity().is_none_or(|arity| arity == count), "{element:?}");
+    prop_assert!(count == 0 || element.text.is_empty(), "{element:?}");
+    said.push_str(&element.text);
+    element.children.iter().try_for_each(|child| say(child, said))
+}
+
 proptest! {
     #![proptest_config(ProptestConfig {
         cases: 400,
@@ -222,6 +247,7 @@ proptest! {
         prop_assert!(on_boundaries(&text, &parsed.diagnostics));
         let (_, found) = check(&parsed.tree);
         prop_assert!(on_boundaries(&text, &found));
+        typesets(&text)?;
     }
 
     #[test]
@@ -231,12 +257,19 @@ proptest! {
         };
         prop_assert!(on_boundaries(&text, &found), "{}", shown(&text, &found));
         reads_back(&text)?;
+        typesets(&text)?;
     }
 
     #[test]
     fn what_reads_prints_and_reads_back(text in formulations()) {
         prop_assert!(parse(&text).diagnostics.is_empty(), "{text}");
         reads_back(&text)?;
+        let said = typesets(&text)?;
+        let (checked, _) = check(&parse(&text).tree);
+        for name in [checked.data(), checked.definitions(), checked.variables()].concat() {
+            let plain = name.chars().all(char::is_alphanumeric);
+            prop_assert!(!plain || said.contains(name), "{name} is lost of {text}: {said}");
+        }
     }
 }
 

@@ -10,6 +10,8 @@
 //! | [`log`] | the saved log (version 1) and its digest |
 //! | [`message`] | [`message::Request`] and [`message::Reply`] |
 //! | [`opinion`] | the relaxation that a second LP code is asked about, and its answer |
+//! | [`typeset`] | a formulation set as mathematics |
+//! | [`handover`] | a rival handed over to others |
 //! | [`wire`] | messages as bytes |
 //! | [`results`] | the JSON objects of `hullward run --json`, and their digest |
 //! | [`place`] | byte spans to line, column and UTF-16 units |
@@ -20,6 +22,7 @@
 
 pub mod event;
 pub mod file;
+pub mod handover;
 pub mod hash;
 pub mod link;
 pub mod log;
@@ -28,4 +31,5 @@ pub mod opinion;
 pub mod place;
 pub mod results;
 pub mod scenario;
+pub mod typeset;
 pub mod wire;

@@ -4,8 +4,10 @@
 use serde::{Deserialize, Serialize};
 
 use crate::event::{Branching, Event, NodeNumber, NodeState};
+use crate::handover::{Form, Written};
 use crate::results::{ErrorReport, FamilyReport, RootReport, SearchReport};
 use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
+use crate::typeset::Typeset;
 
 /// The number of a run of a lane: replies of an older run are dropped by the page.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize)]
@@ -22,6 +24,8 @@ pub enum Request {
     List,
     /// Check a formulation while it is typed. Answered by [`Reply::Checked`].
     Check(Box<CheckJob>),
+    /// Hand a rival over to others, all at once. Answered by [`Reply::Written`].
+    Write(Form, Box<LaneJob>),
     /// Load a rival and solve its root. Answered by [`Reply::Understood`] and [`Reply::Root`].
     Load(Box<LaneJob>),
     /// Search on: to the end, or for a number of nodes. Answered by [`Reply::Batch`]es.
@@ -95,6 +99,8 @@ pub enum Reply {
     Catalogue(Vec<CatalogueEntry>),
     /// What is to be said of a formulation as it is typed.
     Checked(Box<CheckReport>),
+    /// A rival handed over.
+    Written(Box<Written>),
     /// A rival was parsed, checked and expanded.
     Understood(Box<RivalReport>),
     /// Long work on one thing goes on.
@@ -242,6 +248,8 @@ pub struct CheckReport {
     pub families: Vec<String>,
     /// How large it is on the instance, where that is quickly known.
     pub size: Option<CheckedSize>,
+    /// The formulation set as mathematics, as far as it can be read.
+    pub typeset: Typeset,
 }
 
 impl CheckReport {

@@ -132,6 +132,7 @@ impl LaneRun {
             Reply::Checked(_)
             | Reply::Relaxation(Ok(_))
             | Reply::Node(_)
+            | Reply::Written(_)
             | Reply::Ready { .. }
             | Reply::InstanceRead(_)
             | Reply::Catalogue(_) => None,

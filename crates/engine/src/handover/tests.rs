@@ -62,3 +62,23 @@ fn what_cannot_be_made_is_refused_with_places() {
     }
     assert!(latex(&own, 1).is_err());
 }
+
+#[test]
+fn the_page_is_handed_the_same_text() {
+    let own = shipped("atsp/labels");
+    let job = |rival: &Rival| LaneJob {
+        instance: own.instance.clone(),
+        rival: rival.clone(),
+        ..LaneJob::default()
+    };
+    let texts = [mps(&own, (0, 0)), latex(&own, 0), notation_text(&own, 0)];
+    for (form, wanted) in [Form::Mps, Form::Latex, Form::Text].into_iter().zip(texts) {
+        let Reply::Written(written) = handed_over(form, job(&own.rivals[0])) else {
+            panic!("{form:?} is refused");
+        };
+        let wanted = wanted.expect("written");
+        assert_eq!((written.text, written.notes), (wanted.text, wanted.notes));
+    }
+    let unknown = Rival { from: Some("atsp/none".to_owned()), ..Rival::default() };
+    assert!(matches!(handed_over(Form::Mps, job(&unknown)), Reply::Failed(_)));
+}

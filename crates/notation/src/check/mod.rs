@@ -66,6 +66,13 @@ impl Checked {
         self.plan.families.iter().map(|family| family.name.as_str()).collect()
     }
 
+    /// The name of the constraint family whose line begins at a place.
+    #[must_use]
+    pub fn family_at(&self, place: Span) -> Option<&str> {
+        let family = self.plan.families.iter().find(|one| one.span.start == place.start);
+        family.map(|family| family.name.as_str())
+    }
+
     /// Its title; empty when it has none.
     #[must_use]
     pub fn title(&self) -> &str {

@@ -13,12 +13,12 @@ use crate::syntax::{
 const ANY: u8 = 0;
 const AND: u8 = 1;
 const NOT: u8 = 2;
-const RANGE: u8 = 4;
-const SUM: u8 = 5;
-const PRODUCT: u8 = 6;
-const FACTOR: u8 = 7;
+pub(crate) const RANGE: u8 = 4;
+pub(crate) const SUM: u8 = 5;
+pub(crate) const PRODUCT: u8 = 6;
+pub(crate) const FACTOR: u8 = 7;
 const POWER: u8 = 8;
-const PRIMARY: u8 = 9;
+pub(crate) const PRIMARY: u8 = 9;
 
 /// Prints expressions of one formulation.
 pub(super) struct Printer<'t> {
@@ -226,7 +226,7 @@ impl<'t> Printer<'t> {
 }
 
 /// How tightly an expression binds.
-fn level(kind: &Kind) -> u8 {
+pub(crate) fn level(kind: &Kind) -> u8 {
     match kind {
         Kind::Any(_) => ANY,
         Kind::All(_) => AND,

@@ -15,6 +15,7 @@ use crate::lex::lex;
 use crate::lex::token::Kind as Token;
 use crate::syntax::{Expression, Formulation, Kind, Line};
 use expression::Printer;
+pub(crate) use expression::{FACTOR, PRIMARY, PRODUCT, RANGE, SUM, level};
 pub(crate) use reserved::unescaped;
 use reserved::{escaped, escaped_text};
 
@@ -102,7 +103,7 @@ fn remark_text(remark: &str) -> String {
 }
 
 /// The names that are declared or carry indices: they are one name, however many letters.
-fn whole_names(tree: &Formulation) -> std::collections::BTreeSet<&str> {
+pub(crate) fn whole_names(tree: &Formulation) -> std::collections::BTreeSet<&str> {
     let mut names = std::collections::BTreeSet::new();
     for line in tree.data.iter().chain(&tree.definitions).chain(&tree.statements) {
         let operands = line.left.iter().chain(line.links.iter().map(|(_, operand)| operand));

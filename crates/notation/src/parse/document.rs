@@ -6,7 +6,7 @@ use crate::latex::unescaped;
 use crate::lex::lex;
 use crate::lex::token::{Gap, Kind as T};
 use crate::place::Span;
-use crate::syntax::{Formulation, Objective};
+use crate::syntax::{Formulation, Objective, Section, Unread};
 
 /// The title, if the first line that holds anything is one, and the byte where the rest begins.
 pub(super) fn title(text: &str) -> (Option<String>, usize) {
@@ -50,6 +50,18 @@ enum Part {
     Definitions,
     Objective { maximise: bool, start: Span },
     Statements,
+}
+
+impl Part {
+    /// The part in the tree; what stands before the first part word counts as a statement.
+    fn section(self) -> Section {
+        match self {
+            Self::Data => Section::Data,
+            Self::Definitions => Section::Definitions,
+            Self::Objective { .. } => Section::Objective,
+            Self::None | Self::Statements => Section::Statements,
+        }
+    }
 }
 
 /// What is known of a line while its end is sought.
@@ -116,6 +128,7 @@ impl Parser<'_> {
         if read.is_none() {
             let words = self.tokens[first..end].iter().filter(|t| t.kind == T::Word);
             tree.unread.extend(words.map(|t| t.text.clone()));
+            tree.unread_lines.push(Unread { section: part.section(), span });
         }
         match part {
             Part::Data => tree.ends.data = Some(span),

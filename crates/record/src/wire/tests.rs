@@ -2,9 +2,11 @@
 
 use super::*;
 use crate::event::{Event, NodeNumber};
-use crate::message::{Acted, LaneJob, Reply, RunNumber};
+use crate::handover::{Form, Written};
+use crate::message::{Acted, CheckReport, LaneJob, Reply, RunNumber};
 use crate::results::{ErrorReport, RootReport, SearchReport, SolutionEntry, Status};
 use crate::scenario::{Act, ActKind, InstanceText, Rival, Run};
+use crate::typeset::{Element, Tag, Typeset, TypesetRow};
 
 fn root() -> RootReport {
     RootReport {
@@ -43,6 +45,13 @@ fn search() -> SearchReport {
     }
 }
 
+fn typeset() -> Typeset {
+    let leaf = |tag, text: &str| Element { tag, text: text.to_owned(), children: Vec::new() };
+    let children = vec![leaf(Tag::Identifier, "x"), leaf(Tag::Number, "1")];
+    let left = vec![Element { tag: Tag::Sub, text: String::new(), children }];
+    Typeset { rows: vec![TypesetRow { left, ..TypesetRow::default() }], further: 1 }
+}
+
 fn act() -> Act {
     let on = ["x", "Ash", "Birch"].map(str::to_owned).to_vec();
     Act { after: 12, what: ActKind::Branch, node: Some(9), on }
@@ -60,7 +69,8 @@ fn requests_come_back() {
     for request in [
         Request::Warm,
         Request::List,
-        Request::Load(Box::new(job)),
+        Request::Load(Box::new(job.clone())),
+        Request::Write(Form::Latex, Box::new(job)),
         Request::Run { nodes: Some(1) },
         Request::Inspect(NodeNumber(9)),
         Request::Act(act()),
@@ -82,6 +92,8 @@ fn replies_come_back_with_their_empty_fields() {
         Reply::Done(Box::new(search())),
         Reply::Batch(vec![Event::Bound { bound: 1.0, nodes: 2 }]),
         Reply::Failed(failed),
+        Reply::Written(Box::new(Written { text: "ENDATA\n".to_owned(), notes: Vec::new() })),
+        Reply::Checked(Box::new(CheckReport { typeset: typeset(), ..CheckReport::default() })),
         Reply::Acted(Box::new(Acted {
             act: act(),
             replayed: true,

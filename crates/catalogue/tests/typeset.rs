@@ -21,7 +21,7 @@ fn line(element: &Element) -> String {
         Tag::Sup | Tag::Accent => format!("{}^{}", part(0), grouped(1)),
         Tag::SubSup | Tag::UnderOver => format!("{}_{}^{}", part(0), grouped(1), grouped(2)),
         Tag::Fraction => format!("{}/{}", grouped(0), grouped(1)),
-        Tag::Thin => "~".to_owned(),
+        Tag::Thin => String::new(),
         Tag::Table => element.children.iter().map(line).collect::<Vec<_>>().join(" ⏎ "),
         Tag::Row | Tag::TableRow | Tag::Cell => {
             element.children.iter().map(line).collect::<Vec<_>>().join(" ")

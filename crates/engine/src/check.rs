@@ -6,7 +6,7 @@ use std::collections::BTreeMap;
 use instance::Instance;
 use model::Model;
 use notation::{Bound, Checked, Diagnostic, Expansion, Limits, Progress, utf16_range};
-use record::message::{CheckJob, CheckReport, CheckedSize, Remark, TextEdit};
+use record::message::{CheckJob, CheckReport, CheckedSize, Complaint, Remark, TextEdit};
 
 use crate::map::{of_diagnostic, of_typeset};
 use crate::readings::Readings;
@@ -79,7 +79,10 @@ fn remark(text: &str, found: &Diagnostic) -> Remark {
             text: edit.text.clone(),
         }
     });
-    Remark { complaint: of_diagnostic(text, found), mends: mends.collect() }
+    let by_hand = found.mends.iter().filter(|mend| mend.edit.is_none());
+    let by_hand: Vec<&str> = by_hand.map(|mend| mend.label.as_str()).collect();
+    let complaint = Complaint { mend: by_hand.join("; "), ..of_diagnostic(text, found) };
+    Remark { complaint, mends: mends.collect() }
 }
 
 fn names(names: &[&str]) -> Vec<String> {
@@ -123,6 +126,8 @@ mod tests {
         assert_eq!(remark.complaint.line, 8);
         assert!(remark.complaint.message.contains('y'), "{remark:?}");
         assert!(!remark.mends.is_empty(), "{remark:?}");
+        let told = |edit: &TextEdit| remark.complaint.mend.contains(&edit.label);
+        assert!(!remark.mends.iter().any(told), "what a button does is told once: {remark:?}");
     }
 
     #[test]

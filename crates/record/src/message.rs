@@ -263,7 +263,7 @@ impl CheckReport {
 /// A complaint with the changes that would mend it.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Remark {
-    /// The complaint.
+    /// The complaint; its mend tells what none of the changes makes.
     pub complaint: Complaint,
     /// Changes of the text, the likeliest first.
     pub mends: Vec<TextEdit>,

@@ -55,7 +55,7 @@ pub(crate) fn copy(text: &str, then: impl Fn(bool) + Clone + 'static) -> Option<
 
 /// Saves a text as a file of the browser's downloads.
 pub(crate) fn download(name: &str, text: &str) {
-    let url = ObjectUrl::from(Blob::new_with_options(text, Some("application/toml")));
+    let url = ObjectUrl::from(Blob::new_with_options(text, Some("application/octet-stream")));
     let Ok(link) = document().create_element("a") else { return };
     let named = link.set_attribute("href", &url).and(link.set_attribute("download", name));
     if let (Ok(()), Ok(link)) = (named, link.dyn_into::<HtmlElement>()) {

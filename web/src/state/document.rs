@@ -144,7 +144,9 @@ impl Document {
     /// This document in place of another: what is not of the scenario goes on.
     pub(crate) fn again(&self, other: &Self, history: Shared<History>) -> Self {
         let next = if self.next > other.next { self.next } else { other.next };
-        Self { catalogue: other.catalogue.clone(), history, next, ..self.clone() }
+        let mut again = Self { catalogue: other.catalogue.clone(), history, next, ..self.clone() };
+        again.recognise();
+        again
     }
 
     /// The letter of the rival at a place.
@@ -275,7 +277,10 @@ impl Document {
                 }
                 document.read(text, report);
             }
-            DocumentAction::Catalogue(entries) => document.catalogue = Shared::new(entries),
+            DocumentAction::Catalogue(entries) => {
+                document.catalogue = Shared::new(entries);
+                document.recognise();
+            }
             DocumentAction::Add(id) => {
                 document.push(Rival { from: Some(id), ..Rival::default() });
             }

@@ -123,6 +123,22 @@ impl Document {
         }
     }
 
+    /// Finds what texts were before they were edited: the shipped formulation that has the title
+    /// in the text's first line. A file holds the text alone.
+    pub(crate) fn recognise(&mut self) {
+        for slot in &mut self.slots {
+            let Some(text) = slot.rival.text.as_ref().filter(|_| slot.shipped.is_none()) else {
+                continue;
+            };
+            let title = text.lines().map(str::trim).find(|line| !line.is_empty());
+            let mut same = self.catalogue.iter().filter(|entry| Some(entry.title.trim()) == title);
+            if let (Some(entry), None) = (same.next(), same.next()) {
+                let from = Some(entry.id.clone());
+                slot.shipped = Some(Shared::new(Rival { from, ..Rival::default() }));
+            }
+        }
+    }
+
     fn slot(&mut self, id: LaneId) -> Option<&mut Slot> {
         self.slots.iter_mut().find(|slot| slot.id == id)
     }
@@ -195,6 +211,22 @@ mod tests {
         assert_eq!(document.slots[0].rival.title, "Labels (edited)");
         document.edit(Edit::Restore(id));
         assert_eq!(document.slots, before);
+    }
+
+    /// A link holds the edited text alone: opened from one, it had no way back.
+    #[test]
+    fn an_edited_text_from_a_file_finds_its_way_back() {
+        let catalogue = document().catalogue;
+        let text = |text: &str| Rival { text: Some(text.to_owned()), ..Rival::default() };
+        let rivals = vec![text("\n Labels \nmin 2x"), text("Others\nmin x")];
+        let mut opened = Document::open(Scenario { rivals, ..Scenario::default() });
+        opened.catalogue = catalogue;
+        opened.recognise();
+        let shipped = opened.slots[0].shipped.clone();
+        opened.recognise();
+        assert_eq!(opened.slots[0].shipped, shipped);
+        assert_eq!(shipped.and_then(|rival| rival.from.clone()).as_deref(), Some("a/b"));
+        assert_eq!(opened.slots[1].shipped, None);
     }
 
     #[test]

@@ -12,4 +12,5 @@ pub(crate) mod outline;
 pub(crate) mod pointer;
 pub(crate) mod share;
 pub(crate) mod tree;
+pub(crate) mod typeset;
 pub(crate) mod words;

@@ -106,12 +106,17 @@ pub(crate) fn from_fragment(fragment: &str) -> Option<Result<Scenario, Refusal>>
 
 /// A name for the scenario's file that every system takes: `Round.hullward.toml`.
 pub(crate) fn file_name(title: &str) -> String {
+    file_of(title, "hullward.toml")
+}
+
+/// A name for a file with an ending: `A Position labels.mps`.
+pub(crate) fn file_of(title: &str, ending: &str) -> String {
     let safe = |c: char| if c.is_control() || "\\/:*?\"<>|".contains(c) { ' ' } else { c };
     let name: String = title.chars().map(safe).collect();
     let words: Vec<&str> = name.split_whitespace().collect();
     let cut: String = words.join(" ").chars().take(LONGEST_NAME).collect();
     let name = cut.trim_matches(['.', ' ']);
-    format!("{}.hullward.toml", if name.is_empty() { "scenario" } else { name })
+    format!("{}.{ending}", if name.is_empty() { "scenario" } else { name })
 }
 
 /// One of the two places in the browser's store: a number that grows with each save, and the

@@ -1,21 +1,25 @@
 //! A rival opened to its notation: typed text is checked beside the page's own work, and the lane
 //! runs it only when that is asked for. A text that is wrong touches nothing.
 
+use std::cell::RefCell;
+
 use gloo_timers::callback::Timeout;
 use record::message::{CheckJob, CheckReport};
 use record::scenario::InstanceText;
 use report::number::of;
-use web_sys::HtmlInputElement;
+use web_sys::{HtmlInputElement, HtmlTextAreaElement};
 use yew::prelude::*;
 
 use crate::state::document::{DocumentAction, Slot};
 use crate::state::editor::{Draft, Edit};
-use crate::state::highlight::pieces;
+use crate::state::highlight::{Piece, pieces};
 use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
-use crate::view::editor_box::ScriptBox;
+use crate::state::typeset::row_at;
+use crate::view::editor_box::{ScriptBox, select};
 use crate::view::editor_remarks::Remarks;
 use crate::view::hands::{Hands, use_hands};
+use crate::view::typeset::Set;
 
 /// Rest after typing before the text is checked, in milliseconds.
 const REST: u32 = 150;
@@ -61,6 +65,22 @@ pub(crate) fn Editor(props: &EditorProps) -> Html {
     let draft = use_state_eq(|| props.draft.clone());
     let checked = use_state_eq(|| None::<Checked>);
     let area = use_node_ref();
+    let (caret, held) = (use_state_eq(|| 0_u32), use_mut_ref(|| None::<usize>));
+    // A shipped formulation is looked at before it is edited.
+    let editing = use_state_eq(|| props.slot.rival.from.is_none());
+    let begun = use_mut_ref(|| false);
+    let begin = {
+        let (editing, begun) = (editing.setter(), begun.clone());
+        Callback::from(move |_: MouseEvent| {
+            begun.replace(true);
+            editing.set(true);
+        })
+    };
+    use_effect_with((*editing, area.clone()), move |(_, area)| {
+        if let (true, Some(area)) = (begun.replace(false), area.cast::<HtmlTextAreaElement>()) {
+            select(&area, (0, 0));
+        }
+    });
     let setter = draft.setter();
     use_effect_with(props.draft.clone(), move |running| setter.set(running.clone()));
     let hear = checked.setter();
@@ -76,32 +96,90 @@ pub(crate) fn Editor(props: &EditorProps) -> Html {
         return html! { <div id={panel(props.slot.id)} hidden=true /> };
     }
     let state = State { running: props.draft.clone(), draft: now, checked };
-    let (id, fresh) = (props.slot.id, state.is_fresh());
-    let enter = run_it(props.slot.id, &state, hands.as_ref());
+    let set = set(props, &state, *caret, &held, &area);
+    html! {
+        <div
+            class={classes!("editor", editing.then_some("open"))} id={panel(props.slot.id)} role="group"
+            aria-label={format!("Notation of {}", props.letter)} data-testid="editor"
+        >
+            if *editing {
+                { written(props, &state, hands.as_ref(), Text { pieces: (*coloured).clone(), area, change, caret: caret.setter() }) }
+                { set }
+            } else {
+                { set }
+                <div class="row">
+                    <button type="button" data-testid="edit" onclick={begin}>{ "Edit" }</button>
+                    { duplicate(props.slot.id, hands.as_ref()) }
+                </div>
+            }
+        </div>
+    }
+}
+
+/// What the box of the text is drawn with.
+struct Text {
+    pieces: Shared<Vec<Piece>>,
+    area: NodeRef,
+    change: Callback<Draft>,
+    caret: UseStateSetter<u32>,
+}
+
+/// Title, role, the text with its buttons, and what is to be said of it.
+fn written(props: &EditorProps, state: &State, hands: Option<&Hands>, text: Text) -> Html {
+    let enter = run_it(props.slot.id, state, hands);
     let typed = {
-        let (change, draft) = (change.clone(), state.draft.clone());
-        change.reform(move |text| Draft { text, ..draft.clone() })
+        let draft = state.draft.clone();
+        text.change.reform(move |text| Draft { text, ..draft.clone() })
     };
     let remarks = state.checked.as_ref().map_or_else(Vec::new, |c| c.report.remarks.clone());
-    let (told, listed) = (format!("{}-state", panel(id)), format!("{}-remarks", panel(id)));
+    let id = panel(props.slot.id);
+    let (told, listed) = (format!("{id}-state"), format!("{id}-remarks"));
     html! {
-        <div class="editor" id={panel(id)} role="group" aria-label={format!("Notation of {}", props.letter)} data-testid="editor">
-            <div>
-                { heading(&state.draft, &change) }
-                <ScriptBox
-                    id={format!("{}-text", panel(id))} label={format!("Notation of {}", props.letter)}
-                    text={state.draft.text.clone()} pieces={(*coloured).clone()}
-                    invalid={state.is_wrong()} described_by={format!("{told} {listed}")}
-                    area={area.clone()} typed={typed.clone()} enter={enter.clone()}
-                />
-                { buttons(props, &state, &enter, hands.as_ref()) }
-            </div>
+        <div>
+            { heading(&state.draft, &text.change) }
+            <ScriptBox
+                id={format!("{id}-text")} label={format!("Notation of {}", props.letter)}
+                text={state.draft.text.clone()} pieces={text.pieces}
+                invalid={state.is_wrong()} described_by={format!("{told} {listed}")}
+                area={text.area.clone()} typed={typed.clone()} enter={enter.clone()}
+                caret={Callback::from(move |at| text.caret.set(at))}
+            />
+            { buttons(props, state, &enter, hands) }
             <div class="small">
                 <p id={told} role="status" data-testid="notation-state">{ state.words() }</p>
-                { families(&state) }
-                <Remarks id={listed} remarks={Shared::new(remarks)} {fresh} {area} {typed} />
+                <Remarks
+                    id={listed} remarks={Shared::new(remarks)} fresh={state.is_fresh()}
+                    area={text.area} {typed}
+                />
             </div>
         </div>
+    }
+}
+
+/// The formulation as it was last read, set; the row of the caret is found while the text is as
+/// it was read.
+fn set(
+    props: &EditorProps,
+    state: &State,
+    caret: u32,
+    held: &RefCell<Option<usize>>,
+    area: &NodeRef,
+) -> Html {
+    let Some(Checked { text, report }) = &state.checked else { return Html::default() };
+    if state.is_fresh() {
+        *held.borrow_mut() = row_at(&report.typeset.rows, text, caret);
+    }
+    let area = area.clone();
+    let show = Callback::from(move |place: (u32, u32)| {
+        if let Some(area) = area.cast::<HtmlTextAreaElement>() {
+            select(&area, place);
+        }
+    });
+    html! {
+        <Set
+            label={format!("{} as mathematics", props.letter)} report={report.clone()}
+            active={*held.borrow()} {show}
+        />
     }
 }
 
@@ -201,15 +279,6 @@ fn heading(draft: &Draft, change: &Callback<Draft>) -> Html {
     }
 }
 
-fn families(state: &State) -> Html {
-    let Some(checked) = &state.checked else { return Html::default() };
-    let names = checked.report.families.join(", ");
-    if names.is_empty() {
-        return Html::default();
-    }
-    html! { <p class="soft" data-testid="notation-families">{ format!("Families: {names}.") }</p> }
-}
-
 /// Makes the lane run the draft.
 fn run_it(id: LaneId, state: &State, hands: Option<&Hands>) -> Callback<()> {
     let (Some(hands), Some(checked), true) = (hands, &state.checked, state.can_be_used()) else {
@@ -228,15 +297,6 @@ fn buttons(
     enter: &Callback<()>,
     hands: Option<&Hands>,
 ) -> Html {
-    let id = props.slot.id;
-    let act = |edit: fn(LaneId) -> Edit| {
-        let hands = hands.cloned();
-        Callback::from(move |_: MouseEvent| {
-            if let Some(hands) = &hands {
-                hands.document.dispatch(DocumentAction::Edit(edit(id)));
-            }
-        })
-    };
     let able = state.can_be_used();
     let run = enter.reform(|_: MouseEvent| ());
     html! {
@@ -246,9 +306,24 @@ fn buttons(
                 title="Control and Enter" onclick={run}
             >{ "Use this text" }</button>
             if props.slot.shipped.is_some() {
-                <button type="button" data-testid="restore" onclick={act(Edit::Restore)}>{ "Back to the shipped text" }</button>
+                <button type="button" data-testid="restore" onclick={act(Edit::Restore, props.slot.id, hands)}>{ "Back to the shipped text" }</button>
             }
-            <button type="button" data-testid="duplicate" onclick={act(Edit::Duplicate)}>{ "Duplicate this rival" }</button>
+            { duplicate(props.slot.id, hands) }
         </div>
     }
+}
+
+fn duplicate(id: LaneId, hands: Option<&Hands>) -> Html {
+    html! {
+        <button type="button" data-testid="duplicate" onclick={act(Edit::Duplicate, id, hands)}>{ "Duplicate this rival" }</button>
+    }
+}
+
+fn act(edit: fn(LaneId) -> Edit, id: LaneId, hands: Option<&Hands>) -> Callback<MouseEvent> {
+    let hands = hands.cloned();
+    Callback::from(move |_: MouseEvent| {
+        if let Some(hands) = &hands {
+            hands.document.dispatch(DocumentAction::Edit(edit(id)));
+        }
+    })
 }

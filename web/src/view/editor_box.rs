@@ -23,6 +23,8 @@ pub(crate) struct BoxProps {
     pub(crate) area: NodeRef,
     pub(crate) typed: Callback<String>,
     pub(crate) enter: Callback<()>,
+    /// Hears where the caret is.
+    pub(crate) caret: Callback<u32>,
 }
 
 /// The box.
@@ -33,7 +35,14 @@ pub(crate) fn ScriptBox(props: &BoxProps) -> Html {
     let behind = use_node_ref();
     let look = {
         let (area, offered, dismissed) = (props.area.clone(), offered.setter(), dismissed.clone());
-        move || offered.set(current(&area).filter(|offer| *dismissed.borrow() != Some(offer.start)))
+        let caret = props.caret.clone();
+        move || {
+            let offer = current(&area).filter(|offer| *dismissed.borrow() != Some(offer.start));
+            offered.set(offer);
+            if let Some((_, end)) = selection(&area) {
+                caret.emit(end);
+            }
+        }
     };
     let oninput = {
         let (look, typed) = (look.clone(), props.typed.clone());
@@ -124,9 +133,14 @@ impl Key {
 
 /// The offer at the caret; none while something is selected.
 fn current(area: &NodeRef) -> Option<Offer> {
+    let (start, end) = selection(area)?;
+    let text = area.cast::<HtmlTextAreaElement>()?.value();
+    if start == end { offer(&text, end) } else { None }
+}
+
+fn selection(area: &NodeRef) -> Option<(u32, u32)> {
     let area = area.cast::<HtmlTextAreaElement>()?;
-    let (start, end) = (area.selection_start().ok()??, area.selection_end().ok()??);
-    if start == end { offer(&area.value(), end) } else { None }
+    Some((area.selection_start().ok()??, area.selection_end().ok()??))
 }
 
 /// Puts a text in place of a range, so that the browser's own Undo knows of it.

@@ -4,7 +4,7 @@
 use record::event::NodeNumber;
 use record::message::{LaneJob, RivalReport};
 use record::results::ErrorReport;
-use record::scenario::{InstanceText, Run};
+use record::scenario::{InstanceText, Rival, Run};
 use report::axis::Axis;
 use report::number::{count, of};
 use yew::prelude::*;
@@ -19,6 +19,7 @@ use crate::view::canvas::TreeCanvas;
 use crate::view::editor::{Editor, toggle};
 use crate::view::families::Families;
 use crate::view::figure::{figure, gap, share};
+use crate::view::handover::TakeAway;
 use crate::view::hands::{Hands, use_hands};
 use crate::view::inspector::{focus, focus_inspector};
 use crate::view::paint::Scene;
@@ -78,7 +79,10 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 }
                 if let Some(error) = &props.lane.error { { failure(error) } }
                 if let Some(hands) = &hands { { buttons(props, hands) } }
-                if props.draft.is_some() { { toggle(props.slot.id, &props.letter, &writing) } }
+                <div class="acts more">
+                    if props.draft.is_some() { { toggle(props.slot.id, &props.letter, &writing) } }
+                    { take_away(props) }
+                </div>
             </div>
             <div class="lane-drawing">
                 if let Some(hands) = &hands { { drawing(props, hands) } }
@@ -93,6 +97,15 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
     }
 }
 
+fn take_away(props: &LaneProps) -> Html {
+    let job = job(props.text.as_deref().cloned(), &props.slot.rival, &props.run, props.seed);
+    html! { <TakeAway letter={props.letter.clone()} title={props.title.clone()} {job} /> }
+}
+
+fn job(instance: Option<InstanceText>, rival: &Rival, run: &Run, seed: u64) -> LaneJob {
+    LaneJob { instance, rival: rival.clone(), settings: run.clone(), seed, ..LaneJob::default() }
+}
+
 /// Loads the rival when it, or the instance, is another; ends its worker when the lane goes.
 #[hook]
 fn use_loading(props: &LaneProps, hands: Option<Hands>) {
@@ -103,14 +116,7 @@ fn use_loading(props: &LaneProps, hands: Option<Hands>) {
         let session = session.clone();
         use_effect_with((props.text.clone(), rival), move |(text, rival)| {
             if let (Some(session), Some(text)) = (session, text) {
-                let job = LaneJob {
-                    instance: Some((**text).clone()),
-                    rival: (**rival).clone(),
-                    settings: (*run).clone(),
-                    seed,
-                    ..LaneJob::default()
-                };
-                session.load(id, job);
+                session.load(id, job(Some((**text).clone()), rival, &run, seed));
             }
         });
     }
@@ -185,7 +191,7 @@ fn figures(props: &LaneProps) -> Html {
 
 fn failure(error: &ErrorReport) -> Html {
     html! {
-        <div class="complaints small" data-testid="failure">
+        <div class="complaints errors small" data-testid="failure">
             <p><b>{ "Not run: " }</b>{ sentence(&error.message) }</p>
             if !error.complaints.is_empty() {
                 <ul>

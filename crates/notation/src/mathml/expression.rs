@@ -69,7 +69,7 @@ impl<'t> Printer<'t> {
     pub(super) fn clause(&self, clause: &Clause) -> Vec<Element> {
         let mut out = self.list(&clause.items);
         if !clause.such_that.is_empty() {
-            out.push(self.operator(":"));
+            out.extend(colon());
             out.extend(self.list(&clause.such_that));
         }
         out
@@ -176,7 +176,8 @@ impl<'t> Printer<'t> {
                 vec![from, comma(), Element::name("…"), comma(), to]
             }
             Kind::Builder(member, conditions) => {
-                let mut inner = vec![self.expression(member), self.operator(":")];
+                let mut inner = vec![self.expression(member)];
+                inner.extend(colon());
                 inner.extend(self.list(conditions));
                 inner
             }
@@ -357,6 +358,11 @@ impl<'t> Printer<'t> {
             }
         }
     }
+}
+
+/// A colon between what is chosen and its conditions, with space on both sides.
+fn colon() -> [Element; 2] {
+    [Element::leaf(Tag::Thin, ""), Element::leaf(Tag::Operator, ":")]
 }
 
 /// Something in brackets, which grow only with a fraction.

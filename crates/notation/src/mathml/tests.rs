@@ -39,7 +39,7 @@ fn a_row_aligns_at_its_relation_and_has_its_quantifier_and_label_apart() {
         [
             "⟨under[∑; ⟨j : ⟨⟨( i , j )⟩ ∈ A⟩⟩] ⟨sub[c; ⟨i , j⟩] * sub[x; ⟨i , j⟩]⟩⟩",
             "= 1",
-            "∀ ⟨i ∈ V⟩ : ⟨i ≠ r⟩",
+            "∀ ⟨i ∈ V⟩ ~ : ⟨i ≠ r⟩",
         ],
     );
     assert_eq!(row("x ≤ 1  (leave)").words, "leave");
@@ -87,7 +87,7 @@ fn domains_and_sets_read_as_in_a_paper() {
     is("x, y ∈ ℤ_{>0}", ["x , y", "∈ sub[ℤ; ⟨> 0⟩]", ""]);
     is(
         "x(δ^+(S)) ≥ 1  ∀ S ⊂ V : |S| odd",
-        ["⟨x ⟨( ⟨sup[δ; +] ⟨( S )⟩⟩ )⟩⟩", "≥ 1", "∀ ⟨S ⊂ V⟩ : ⟨⟨| S |⟩ _odd⟩"],
+        ["⟨x ⟨( ⟨sup[δ; +] ⟨( S )⟩⟩ )⟩⟩", "≥ 1", "∀ ⟨S ⊂ V⟩ ~ : ⟨⟨| S |⟩ _odd⟩"],
     );
 }
 

@@ -33,5 +33,11 @@ mod answering;
 #[path = "page/editing.rs"]
 mod editing;
 
+#[path = "page/typeset.rs"]
+mod typeset;
+
+#[path = "page/handover.rs"]
+mod handover;
+
 #[path = "page/looks.rs"]
 mod looks;

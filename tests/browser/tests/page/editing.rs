@@ -28,6 +28,8 @@ data
 
 async fn open(browser: &Browser, letter: &str) -> Outcome<Element> {
     button(browser, letter, "notation").await?.click().await?;
+    // A shipped formulation is looked at first.
+    button(browser, letter, "edit").await?.click().await?;
     browser.select(&part(letter, "notation-text")).await
 }
 
@@ -86,6 +88,11 @@ async fn a_changed_coefficient_runs_its_own_lane_anew_and_can_go_back() -> Outco
         button(browser, "D", "restore").await?.click().await?;
         browser.until("the bound is back", SOON, async || is(10.0)(browser).await).await?;
         assert_eq!(typed(browser, "D").await?, shipped);
+        // A mend that has a button is told once.
+        let unknown = shipped.replace("c_{i,j} x_{i,j}\n", "c_{i,j} y_{i,j}\n");
+        write(browser, "D", &unknown, ("notation-remarks", "Do this: make it a variable")).await?;
+        let told = text(browser, "D", "notation-remarks").await?;
+        assert_eq!(told.to_lowercase().matches("make it a variable").count(), 1, "{told}");
         Ok(())
     })
     .await
@@ -152,6 +159,18 @@ async fn an_own_rival_is_pasted_from_a_paper_and_runs() -> Outcome<()> {
         button(browser, "D", "duplicate").await?.click().await?;
         status(browser, "E", "root solved").await?;
         assert_eq!(value(browser, "E", "root-bound").await?, Some(20.0));
+        // Without its rows the round costs nothing: families of an own text are switched as others are.
+        let family = browser.select("[data-lane=E] [data-family=leave]").await?;
+        family.select_by_value("out").await?;
+        browser.select("[data-lane=E] [data-family=enter]").await?.select_by_value("out").await?;
+        let free = async || Ok(value(browser, "E", "root-bound").await? == Some(0.0));
+        browser.until("no rows are left", SOON, free).await?;
+        assert_eq!(value(browser, "D", "root-bound").await?, Some(20.0));
+        button(browser, "E", "remove").await?.click().await?;
+        let gone = "return document.querySelector('[data-lane=E]') === null";
+        browser
+            .until("the copy is gone", SOON, async || Ok(browser.script(gone).await? == true))
+            .await?;
         Ok(())
     })
     .await

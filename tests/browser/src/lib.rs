@@ -23,6 +23,6 @@ pub mod worker;
 pub type Outcome<T> = Result<T, Box<dyn std::error::Error>>;
 
 /// An error out of a sentence.
-pub fn fault(sentence: impl Into<String>) -> Box<dyn std::error::Error> {
+pub(crate) fn fault(sentence: impl Into<String>) -> Box<dyn std::error::Error> {
     sentence.into().into()
 }

@@ -2,9 +2,9 @@
 
 use std::path::Path;
 
+use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::visit::{Source, visit};
-use hullward_tests_browser::{Outcome, fault};
 use tokio::process::Command;
 
 use crate::lanes::{button, status, text};
@@ -38,7 +38,7 @@ async fn written(letter: &str, form: &str) -> Outcome<String> {
     command.args(["run", "--quiet", "--package", "hullward-command", "--"]);
     let output = command.args(["write", DEMO, "--rival", letter, "--as", form]).output().await?;
     if !output.status.success() {
-        return Err(fault(String::from_utf8_lossy(&output.stderr).into_owned()));
+        return Err(String::from_utf8_lossy(&output.stderr).into());
     }
     Ok(String::from_utf8(output.stdout)?)
 }

@@ -13,6 +13,7 @@ mod options;
 mod progress;
 mod read;
 mod run;
+mod same;
 mod second;
 mod source;
 mod table;

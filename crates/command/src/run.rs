@@ -13,6 +13,7 @@ use crate::complain::complain;
 use crate::ending::Ending;
 use crate::options::RunOptions;
 use crate::progress::Line;
+use crate::same;
 use crate::second::add_opinion;
 use crate::source::{self, Source};
 use crate::table;
@@ -67,12 +68,13 @@ impl Job<'_> {
                     writeln!(out)?;
                     out.flush()?;
                 }
-                results.push(one);
+                results.push((instance * scenario.rivals.len() + rival, one));
             }
         }
+        same::say(&scenario, &results, &self.source.name, err)?;
         if !self.options.json {
-            let whole = self.options.rival.is_none();
-            table::print(&scenario, &results, whole, out)?;
+            let results: Vec<RivalResult> = results.into_iter().map(|(_, one)| one).collect();
+            table::print(&scenario, &results, out)?;
         }
         self.left_out(&scenario, err)?;
         Ok(ending)

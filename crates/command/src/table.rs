@@ -3,7 +3,7 @@
 use std::collections::BTreeSet;
 use std::io::{Result, Write};
 
-use record::results::{self, RivalResult, SearchReport, Status};
+use record::results::{RivalResult, SearchReport, Status};
 use record::scenario::Scenario;
 use report::explain;
 use report::number::{count, of, percent, short};
@@ -37,11 +37,10 @@ const HEADINGS: [&str; 11] = [
 /// The columns that are words, not numbers.
 const WORDS: [usize; 3] = [0, 1, 10];
 
-/// Prints the table; `whole` says that every rival was run, so that the digest counts.
+/// Prints the table.
 pub(crate) fn print(
     scenario: &Scenario,
     results: &[RivalResult],
-    whole: bool,
     out: &mut dyn Write,
 ) -> Result<()> {
     let title = if scenario.title.is_empty() { "scenario" } else { &scenario.title };
@@ -69,9 +68,6 @@ pub(crate) fn print(
     }
     if results.iter().any(|one| one.second.is_some()) {
         writeln!(out, "{LEGEND}")?;
-    }
-    if whole {
-        compare(scenario, results, out)?;
     }
     writeln!(out, "\n{CAUTION}")
 }
@@ -176,18 +172,4 @@ fn notes(one: &RivalResult) -> Vec<String> {
         format!("{name} on demand ({how}): {added} added at the root")
     }));
     notes
-}
-
-/// Says whether the results are those that were saved with the scenario.
-fn compare(scenario: &Scenario, results: &[RivalResult], out: &mut dyn Write) -> Result<()> {
-    let Some(saved) = &scenario.digest else { return Ok(()) };
-    if *saved == results::digest(results) {
-        return writeln!(out, "The results are the same as those saved with the scenario.");
-    }
-    let engine = scenario.engine.as_deref().unwrap_or("of unknown version");
-    writeln!(
-        out,
-        "The results differ from those saved with the scenario (engine {engine}; this is {}).",
-        engine::VERSION
-    )
 }

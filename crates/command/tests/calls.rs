@@ -346,12 +346,28 @@ fn a_saved_digest_is_compared() {
     let first = out(&hullward(&["run", "-", "--json"], &two_rivals("")));
     let results: Vec<record::results::RivalResult> =
         first.lines().map(|line| serde_json::from_str(line).expect("JSON")).collect();
-    let digest = record::results::digest(&results);
+    let digest = record::results::digest(&results).expect("there are results");
     let with = |digest: &str| {
         two_rivals("").replacen("title", &format!("digest = \"{digest}\"\ntitle"), 1)
     };
-    assert!(out(&hullward(&["run", "-"], &with(&digest))).contains("are the same as those saved"));
-    assert!(out(&hullward(&["run", "-"], &with("0"))).contains("differ from those saved"));
+    let said = |digest: &str, call: &[&str]| {
+        let output = hullward(&[&["run", "-"], call].concat(), &with(digest));
+        assert_eq!(status(&output), 0, "{}", err(&output));
+        err(&output)
+    };
+    assert!(said(&digest, &[]).contains("are the same as those it was made with\n"));
+    assert!(said(&digest, &["--json"]).contains("are the same"));
+    // The second rival's search, with one digit of its digest changed.
+    let last = if digest.ends_with('0') { "1" } else { "0" };
+    let tampered = format!("{}{last}", &digest[..digest.len() - 1]);
+    assert!(said(&tampered, &[]).contains("differ from those it was made with, B: the search"));
+    assert!(said(&tampered, &["--rival", "A"]).contains("are the same"));
+    assert!(said(&tampered, &["--rival", "B"]).contains("differ"));
+    let roots = digest.split(' ').map(|word| &word[..16]).collect::<Vec<_>>().join(" ");
+    assert!(said(&roots, &[]).contains("are the same"));
+    let older = with(&digest).replacen("title", "engine = \"0.0.1\"\ntitle", 1);
+    assert!(err(&hullward(&["run", "-"], &older)).contains("results are of engine 0.0.1; this is"));
+    assert!(said("-", &[]).contains("no result could be compared"));
 }
 
 #[test]

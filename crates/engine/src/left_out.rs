@@ -8,10 +8,9 @@ use record::scenario::{BranchingRule, Run, Selection};
 pub fn left_out(run: &Run) -> Vec<String> {
     let mut sentences = Vec::new();
     let branching = match run.branching {
-        BranchingRule::MostFractional | BranchingRule::Pseudocost => None,
+        BranchingRule::MostFractional | BranchingRule::Pseudocost | BranchingRule::ByHand => None,
         BranchingRule::Strong => Some("strong branching"),
         BranchingRule::Reliability => Some("reliability branching"),
-        BranchingRule::ByHand => Some("branching by hand"),
     };
     if let Some(rule) = branching {
         sentences.push(format!("{rule} is not in this version; pseudocost was used"));

@@ -16,6 +16,7 @@ mod search;
 mod settings;
 mod typeset;
 
+use act::column_words;
 pub(crate) use act::{act_of, acted, refused};
 pub(crate) use catalogue::catalogue_entries;
 pub(crate) use complaint::{of_diagnostic, of_instance};

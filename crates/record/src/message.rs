@@ -344,6 +344,13 @@ pub struct NodeDetail {
     pub violated: Vec<ViolatedSubset>,
     /// Rows of the ray of an infeasible node, named, with multipliers.
     pub ray: Vec<(String, f64)>,
+    /// Whether the search has not solved it yet: values, bound and sets are of its relaxation with
+    /// the rows known now.
+    pub ahead: bool,
+    /// Why it is not branched on by hand, as a clause.
+    pub branching: Option<String>,
+    /// Why its subtree is not closed by hand, as a clause.
+    pub closing: Option<String>,
 }
 
 /// The value of a column at a node.
@@ -359,6 +366,9 @@ pub struct ColumnValue {
     pub cost: f64,
     /// Whether it must be whole and is not.
     pub fractional: bool,
+    /// The variable and its indices, as an act by hand names them; empty where this column is not
+    /// branched on by hand at this node.
+    pub on: Vec<String>,
 }
 
 /// A way to draw a solution.

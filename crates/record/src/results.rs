@@ -1,7 +1,10 @@
 //! The JSON objects of `hullward run --json`. Field names are fixed; new ones may be added.
 //! What is also sent between workers leaves no field out, for postcard names none.
 
+mod digest;
 mod solution;
+
+pub use digest::{Comparison, compare, digest};
 
 use std::collections::BTreeMap;
 
@@ -146,6 +149,9 @@ pub struct RootReport {
     pub stopped: Option<String>,
 }
 
+/// What stops a search by hand in which every open node is solved and waits for its branching.
+pub const WAITS: &str = "it waits for a branching by hand";
+
 /// What a search gave, so far or at its end.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
 pub struct SearchReport {
@@ -228,35 +234,6 @@ pub struct Timing {
     pub root_ms: f64,
     /// The search.
     pub search_ms: f64,
-}
-
-/// The digest of results: sixteen hexadecimal digits that two machines can compare. Times,
-/// titles, letters, words and the second opinion do not count; the order of the results does.
-#[must_use]
-pub fn digest(results: &[RivalResult]) -> String {
-    let mut bytes = Vec::new();
-    for result in results {
-        let mut compared = RivalResult {
-            scenario: String::new(),
-            instance: String::new(),
-            rival: String::new(),
-            title: String::new(),
-            assumed: Vec::new(),
-            left_out: Vec::new(),
-            second: None,
-            timing: None,
-            ..result.clone()
-        };
-        if let Some(root) = &mut compared.root {
-            root.second_opinion = None;
-        }
-        for family in &mut compared.families {
-            family.separation.clear();
-        }
-        bytes.extend(serde_json::to_vec(&compared).unwrap_or_default());
-        bytes.push(b'\n');
-    }
-    crate::hash::hex(&bytes)
 }
 
 impl std::fmt::Display for ErrorReport {

@@ -18,7 +18,7 @@ pub struct Scenario {
     pub notes: String,
     /// The version of the engine that gave the results, where there were any.
     pub engine: Option<String>,
-    /// The digest of those results ([`crate::results::digest`]): another machine says "same"
+    /// The digest of those results ([`crate::results::digest()`]): another machine says "same"
     /// or "differs".
     pub digest: Option<String>,
     /// The instance, or the first of several; a scenario whose rivals are all MPS needs none.

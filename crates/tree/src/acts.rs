@@ -22,7 +22,7 @@ use lp::Col;
 use model::{ColumnId, FamilyState, LabelId, SubsetFamilyId};
 
 use crate::branching::split;
-use crate::event::{Event, NodeId, NodeState, Side};
+use crate::event::{Event, NodeId, NodeState};
 use crate::relaxation::{Addition, RowOrigin, float_bounds};
 use crate::search::{Ending, Opening, Search, State};
 
@@ -274,54 +274,35 @@ impl Search {
         if !self.tree.has(node) {
             return Err(Refusal::NoSuchNode(node));
         }
-        let whole = self.model.columns().get(column.index()).is_some_and(|column| column.integer);
-        if !whole {
+        if self.model.columns().get(column.index()).is_none_or(|column| !column.integer) {
             return Err(Refusal::NotWhole);
         }
-        let record = self.tree.node(node);
+        let refused = self.branching_refused(node).or_else(|| self.column_refused(node, column));
+        if let Some(refused) = refused {
+            return Err(refused);
+        }
         if let (NodeId::ROOT, Some(_), Some(root)) = (node, self.plan, &self.root) {
             let bounds = float_bounds(&self.model, column);
             let value = root.x.get(column.index()).copied().unwrap_or_default();
             self.plan = Some(split(column, value, bounds).ok_or(Refusal::Fixed(node))?);
+            self.acts.columns.insert(node, column);
             return Ok(());
         }
-        if !self.open.holds(node, record.bound) {
-            return Err(Refusal::NotOpen(node, record.state));
-        }
-        let (lower, upper) = self.bounds_at(node, column);
-        if lower >= upper {
-            return Err(Refusal::Fixed(node));
+        if self.release(node, column)? {
+            return Ok(());
         }
         self.acts.columns.insert(node, column);
         self.acts.ahead.push_back(node);
         Ok(())
     }
 
-    /// The bounds of a column at a node. `O(depth)`.
-    fn bounds_at(&self, node: NodeId, column: ColumnId) -> (f64, f64) {
-        let mut bounds = float_bounds(&self.model, column);
-        for branch in self.tree.path(node).iter().filter(|branch| branch.column == column) {
-            match branch.side {
-                Side::AtMost => bounds.1 = branch.bound,
-                Side::AtLeast => bounds.0 = branch.bound,
-            }
-        }
-        bounds
-    }
-
     /// Closes the open nodes of a subtree. `O(open nodes · depth)`.
     fn close_by_hand(&mut self, top: NodeId) -> Result<(), Refusal> {
-        if !self.tree.has(top) {
-            return Err(Refusal::NoSuchNode(top));
-        }
-        if top == NodeId::ROOT {
-            return Err(Refusal::WholeTree);
+        if let Some(refused) = self.closing_refused(top) {
+            return Err(refused);
         }
         let below = self.open.iter().filter(|&node| self.tree.is_under(node, top));
         let below: Vec<NodeId> = below.collect();
-        if below.is_empty() {
-            return Err(Refusal::NothingOpen(top));
-        }
         for node in below {
             self.open.remove(node, self.tree.node(node).bound);
             self.tree.node_mut(node).state = NodeState::Closed;
@@ -358,7 +339,7 @@ impl Search {
     }
 
     /// Takes the node that comes next out of the open ones: one that a person wants branched,
-    /// else the one that the rule selects.
+    /// else the one that the rule selects. `None` when all that are open wait for a branching.
     pub(crate) fn take_open(&mut self) -> Option<NodeId> {
         let tree = &self.tree;
         while let Some(node) = self.acts.ahead.pop_front() {
@@ -366,7 +347,9 @@ impl Search {
                 return Some(node);
             }
         }
-        self.open.take(self.settings.selection, |node| tree.node(node).bound)
+        let holding = &self.holding;
+        let free = |node: NodeId| !holding.holds(node);
+        self.open.take(self.settings.selection, free, |node| tree.node(node).bound)
     }
 
     /// The column on which a person wants the node in hand branched, split at its value.

@@ -112,7 +112,7 @@ impl Chooser {
         for &column in self.whole.iter().filter(|j| is_fractional(x[j.index()])) {
             let choice = Choice::new(column, x[column.index()]);
             let score = match rule {
-                Branching::MostFractional => {
+                Branching::MostFractional | Branching::ByHand => {
                     smaller(choice.value - choice.floor, choice.floor + 1.0 - choice.value)
                 }
                 Branching::Pseudocost => self.score(&choice),

@@ -35,9 +35,11 @@ impl Search {
         }
         let closed = self.closed(&hand, point);
         let choice = if closed { None } else { self.choice(hand.node, &point.x) };
+        let held = self.is_to_be_held(hand.node);
         let state = match (closed, choice, hand.accepted) {
             (true, _, Some(_)) | (false, None, Some(_)) => NodeState::Integer,
             (true, _, None) => NodeState::Pruned,
+            (false, Some(_), _) if held => NodeState::Open,
             (false, Some(_), _) => NodeState::Branched,
             (false, None, None) => {
                 self.hand = Some(hand);
@@ -64,6 +66,7 @@ impl Search {
             return self.root_decided(hand, choice);
         }
         match choice {
+            Some(_) if held => self.hold(hand.node, inherited, point.x.clone()),
             Some(choice) => self.branch(hand.node, inherited, &choice),
             None => self.leaf(hand.node, hand.proved.as_ref()),
         }

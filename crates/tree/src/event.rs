@@ -34,7 +34,8 @@ pub struct Branch {
 /// How a node ended (or stands).
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum NodeState {
-    /// Not solved yet; or the root where no search was asked for.
+    /// Not solved yet; or solved and waiting for a person's branching, which its children tell;
+    /// or the root where no search was asked for.
     Open,
     /// Solved and branched on (the root: or to be branched on).
     Branched,

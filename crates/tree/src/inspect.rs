@@ -7,13 +7,18 @@
 use std::collections::BTreeSet;
 
 use lp::{Limits, Outcome};
-use model::{LabelId, Number};
+use model::{ColumnId, LabelId, Number};
 use separate::{Progress, Separator, Violated};
 
+use crate::acts::Refusal;
 use crate::cycle::{self, Cycle};
 use crate::event::{Branch, NodeId, NodeState};
 use crate::relaxation::{RowOrigin, direction};
 use crate::search::Search;
+
+/// Simplex iterations spent at most on the relaxation of a node that is not solved yet: from its
+/// parent's basis a branching takes some tens.
+const LOOK: u64 = 1_000;
 
 /// A set of labels and the member of a family that it violates.
 #[derive(Debug, Clone, PartialEq)]
@@ -55,11 +60,21 @@ pub struct NodeView {
     pub ray: Vec<(String, f64)>,
     /// The cycle that this ray, or the direction of an unbounded node, walks.
     pub cycle: Option<Cycle>,
+    /// Whether the search has not solved it yet: what is shown is its relaxation with the rows
+    /// known now, without a round of separation of its own.
+    pub ahead: bool,
+    /// The columns that may be branched on by hand, in order.
+    pub branchable: Vec<ColumnId>,
+    /// Why it is not branched on by hand.
+    pub branching: Option<Refusal>,
+    /// Why its subtree is not closed by hand.
+    pub closing: Option<Refusal>,
 }
 
 impl Search {
-    /// Shows a node; `None` when there is no such node. A node that is not solved has a path and
-    /// no more. One factor and one pass of separation.
+    /// Shows a node; `None` when there is no such node. One factor and one pass of separation; an
+    /// open node that is not solved yet is solved for the eye alone, from its parent's basis, and
+    /// has a path and no more where that takes long. Changes nothing.
     #[must_use]
     pub fn inspect(&mut self, id: NodeId) -> Option<NodeView> {
         if !self.tree.has(id) {
@@ -79,6 +94,10 @@ impl Search {
             violated: Vec::new(),
             ray: Vec::new(),
             cycle: None,
+            ahead: node.state == NodeState::Open && node.basis.is_none(),
+            branchable: self.branchable(id),
+            branching: self.branching_refused(id),
+            closing: self.closing_refused(id),
         };
         self.fill(&mut view);
         Some(view)
@@ -89,10 +108,14 @@ impl Search {
         if node.state == NodeState::Unbounded {
             view.cycle = self.cycle_without_bound();
         }
-        let (Some(relaxation), Some(basis)) = (&self.relaxation, &node.basis) else { return };
-        let Ok(mut simplex) = relaxation.rebuilt(node.rows as usize, &view.path) else { return };
+        let Some(relaxation) = &self.relaxation else { return };
+        let above = node.parent().filter(|_| view.ahead).map(|parent| self.tree.node(parent));
+        let Some(basis) = above.unwrap_or(node).basis.as_deref() else { return };
+        let rows = if view.ahead { relaxation.row_count() } else { node.rows as usize };
+        let Ok(mut simplex) = relaxation.rebuilt(rows, &view.path) else { return };
         simplex.load_basis(basis);
-        match simplex.solve(Limits::default()) {
+        let iterations = view.ahead.then_some(LOOK);
+        match simplex.solve(Limits { iterations, ..Limits::default() }) {
             Outcome::Optimal(solution) => {
                 view.bound = Some(self.user(relaxation.internal(solution.objective)));
                 view.checked_bound = relaxation.prove_at(&view.path, &solution.duals);

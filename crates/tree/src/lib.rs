@@ -52,12 +52,14 @@
 //! claim an optimum unless that bound is no better than the incumbent.
 
 mod acts;
+mod allowed;
 mod branching;
 mod conflict;
 mod cycle;
 mod decide;
 mod direction;
 mod event;
+mod hold;
 mod inspect;
 mod node;
 mod open;

@@ -19,15 +19,17 @@ impl Open {
         self.by_number.insert(node);
     }
 
-    /// Takes out the node that `selection` wants next; `bound_of` gives a node's bound.
+    /// Takes out the `free` node that `selection` wants next; `bound_of` gives a node's bound.
+    /// Each node that is passed over costs `O(1)` more.
     pub(crate) fn take(
         &mut self,
         selection: Selection,
+        free: impl Fn(NodeId) -> bool,
         bound_of: impl Fn(NodeId) -> f64,
     ) -> Option<NodeId> {
         let node = match selection {
-            Selection::BestBound => self.by_bound.first()?.1,
-            Selection::DepthFirst => *self.by_number.last()?,
+            Selection::BestBound => self.by_bound.iter().find(|&&(_, node)| free(node))?.1,
+            Selection::DepthFirst => *self.by_number.iter().rev().find(|&&node| free(node))?,
         };
         self.by_bound.remove(&(key(bound_of(node)), node));
         self.by_number.remove(&node);
@@ -113,7 +115,9 @@ mod tests {
         };
         let order = |selection| {
             let mut open = fill();
-            std::iter::from_fn(|| open.take(selection, bound_of)).map(|n| n.0).collect::<Vec<_>>()
+            std::iter::from_fn(|| open.take(selection, |_| true, bound_of))
+                .map(|n| n.0)
+                .collect::<Vec<_>>()
         };
         assert_eq!(order(Selection::BestBound), vec![2, 3, 4, 1]);
         assert_eq!(order(Selection::DepthFirst), vec![4, 3, 2, 1]);

@@ -191,12 +191,15 @@ impl Search {
         Some((best.0, relaxation.prove(best.1)))
     }
 
-    /// Leaves the root: branches, or drops it where a heuristic has closed it.
+    /// Leaves the root: branches or holds it, or drops it where a heuristic has closed it.
     pub(crate) fn open_root(&mut self) {
         let Some(choice) = self.plan.take() else { return };
         let bound = self.tree.node(NodeId::ROOT).bound;
         if self.target.closes(bound) {
             self.drop_node(NodeId::ROOT);
+        } else if self.is_to_be_held(NodeId::ROOT) {
+            let x = self.root.as_ref().map(|root| root.x.clone()).unwrap_or_default();
+            self.hold(NodeId::ROOT, bound, x);
         } else {
             self.branch(NodeId::ROOT, bound, &choice);
         }

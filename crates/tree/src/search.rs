@@ -12,6 +12,7 @@ use separate::Separator;
 use crate::acts::Acts;
 use crate::branching::{Choice, Chooser};
 use crate::event::{Event, NodeId, Origin};
+use crate::hold::Holding;
 use crate::node::Tree;
 use crate::open::Open;
 use crate::proofs::{Doubtful, Proof};
@@ -188,6 +189,7 @@ pub struct Search {
     pub(crate) quota: Option<u32>,
     pub(crate) paused: bool,
     pub(crate) acts: Acts,
+    pub(crate) holding: Holding,
     pub(crate) roundings: Roundings,
     pub(crate) ledger: Ledger,
     pub(crate) doubtful: Doubtful,
@@ -222,6 +224,7 @@ impl Search {
             quota: None,
             paused: false,
             acts: Acts::default(),
+            holding: Holding::default(),
             roundings: Roundings::default(),
             ledger: Ledger::default(),
             doubtful: Doubtful::default(),

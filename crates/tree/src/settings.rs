@@ -12,6 +12,9 @@ pub enum Branching {
     /// Letters 33). A column without a gain on a side takes the mean of all columns on that
     /// side; while there is no gain at all each unit counts 1, which is most fractional.
     Pseudocost,
+    /// By a person at each node: a node that must be branched on is held, open, until an
+    /// [`Act::Branch`](crate::Act::Branch) names its column.
+    ByHand,
 }
 
 /// Which open node comes next.

@@ -115,7 +115,10 @@ impl Search {
             self.end(Ending::Stopped("node limit".to_owned()));
             return Some(Progress::Finished);
         }
-        let node = self.take_open()?;
+        let Some(node) = self.take_open() else {
+            self.paused = true;
+            return Some(Progress::Paused);
+        };
         self.begin(node)
     }
 

@@ -2,7 +2,7 @@
 
 use std::collections::BTreeSet;
 
-use model::{LabelId, Model, SubsetFamilyId};
+use model::{ColumnId, LabelId, Model, SubsetFamilyId};
 use record::message::Acted;
 use record::scenario::{Act, ActKind};
 
@@ -69,10 +69,7 @@ fn written(model: &Model, act: &tree::Act, after: u32) -> Act {
         |what, node: Option<tree::NodeId>, on| Act { after, what, node: node.map(|n| n.0), on };
     match act {
         tree::Act::Branch { node, column } => {
-            let variable = model.columns()[column.index()].variable;
-            let mut on = vec![model.variables()[variable.index()].name.clone()];
-            on.extend(names(model.column_tuple(*column)));
-            of(ActKind::Branch, Some(*node), on)
+            of(ActKind::Branch, Some(*node), column_words(model, *column))
         }
         tree::Act::Close { node } => of(ActKind::Close, Some(*node), Vec::new()),
         tree::Act::Cut { family, subset } => {
@@ -85,6 +82,15 @@ fn written(model: &Model, act: &tree::Act, after: u32) -> Act {
         }
         tree::Act::Stop => of(ActKind::Stop, None, Vec::new()),
     }
+}
+
+/// A column as an act names it: the variable, then its indices.
+pub(crate) fn column_words(model: &Model, column: ColumnId) -> Vec<String> {
+    let variable = model.columns()[column.index()].variable;
+    let indices = model.column_tuple(column).iter();
+    let mut words = vec![model.variables()[variable.index()].name.clone()];
+    words.extend(indices.map(|&label| model.labels().name(label).to_owned()));
+    words
 }
 
 fn named(name: &str, tuple: &str) -> String {

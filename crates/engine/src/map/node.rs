@@ -4,7 +4,7 @@ use model::{ColumnId, Model};
 use record::message::{ColumnValue, Cycle, NodeDetail, ViolatedSubset};
 
 use super::event::{branch, node_state, number};
-use super::{Drawings, finite, tidy};
+use super::{Drawings, column_words, finite, tidy};
 
 /// Values of less are not listed.
 const ZERO: f64 = 1e-9;
@@ -26,6 +26,9 @@ pub(crate) fn node_detail(model: &Model, drawings: &Drawings, view: &tree::NodeV
         cycle: view.cycle.as_ref().map(|found| cycle(model, found)),
         violated: view.violated.iter().map(|found| violated(model, found)).collect(),
         ray: view.ray.iter().map(|(row, y)| (row.clone(), tidy(*y))).collect(),
+        ahead: view.ahead,
+        branching: view.branching.as_ref().map(ToString::to_string),
+        closing: view.closing.as_ref().map(ToString::to_string),
     }
 }
 
@@ -40,6 +43,11 @@ fn values(model: &Model, view: &tree::NodeView) -> Vec<ColumnValue> {
             reduced_cost: tidy(reduced_cost),
             cost: model.numbers().float(column.cost),
             fractional: column.integer && (value - value.round()).abs() > INTEGRALITY,
+            on: if view.branchable.binary_search(&id).is_ok() {
+                column_words(model, id)
+            } else {
+                Vec::new()
+            },
         }
     });
     values.collect()

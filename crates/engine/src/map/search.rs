@@ -1,7 +1,7 @@
 //! What a search gave, so far or at its end.
 
 use model::{ColumnId, Model};
-use record::results::{ConflictLevel, ConflictReport, SearchReport, SolutionEntry, Status};
+use record::results::{ConflictLevel, ConflictReport, SearchReport, SolutionEntry, Status, WAITS};
 
 use super::{finite, status, tidy};
 
@@ -24,8 +24,13 @@ pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchRepor
         work: summary.work,
         solution: solution(model, &summary.solution),
         checked: summary.checked,
-        stopped: if paused { Some("paused".to_owned()) } else { summary.stopped },
+        stopped: if paused { Some(rest(search).to_owned()) } else { summary.stopped },
     }
+}
+
+/// Why a search stands still that has not ended.
+fn rest(search: &tree::Search) -> &'static str {
+    if search.waits_for_a_branching() { WAITS } else { "paused" }
 }
 
 /// The report of a search that never began.

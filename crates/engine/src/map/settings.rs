@@ -8,6 +8,7 @@ pub(crate) fn settings(run: &Run, seed: u64) -> tree::Settings {
     tree::Settings {
         branching: match run.branching {
             BranchingRule::MostFractional => tree::Branching::MostFractional,
+            BranchingRule::ByHand => tree::Branching::ByHand,
             _ => tree::Branching::Pseudocost,
         },
         selection: match run.selection {

@@ -54,6 +54,42 @@ fn an_unknown_or_unsolved_node_shows_no_point() {
     assert_eq!((view.state, view.bound, view.x.len()), (NodeState::Open, None, 0));
 }
 
+/// To branch by hand one must see the point before the search comes to the node.
+#[test]
+fn an_open_node_is_solved_ahead_and_nothing_changes() {
+    let costs = Random(41).distances(9);
+    let model = round_trip(&costs, Form::Labels, Sense::Minimise);
+    let mut search = Search::new(model.clone(), rules()[0].clone());
+    let mut seen = std::collections::BTreeMap::new();
+    for _ in 0..6 {
+        while search.advance(1000) == crate::Progress::Working {}
+        for node in 2..40 {
+            let Some(view) = search.inspect(NodeId(node)) else { break };
+            assert_eq!(view.ahead, view.state == NodeState::Open);
+            assert_eq!(view.branchable.is_empty(), view.branching.is_some(), "{view:?}");
+            assert!(view.path.iter().all(|branch| !view.branchable.contains(&branch.column)));
+            if view.ahead {
+                seen.insert(view.node, view.bound.map(f64::to_bits));
+            }
+        }
+        search.run(Some(2));
+    }
+    finish(&mut search, 700);
+    let events = search.take_events();
+    let mut met = 0;
+    for event in &events {
+        let Event::Solved { node, bound, .. } = event else { continue };
+        if let Some(ahead) = seen.get(node) {
+            assert_eq!(bound.map(f64::to_bits), *ahead, "{node:?}");
+            met += 1;
+        }
+    }
+    assert!(met > 5, "{met}");
+    let mut untouched = Search::new(model, rules()[0].clone());
+    finish(&mut untouched, 700);
+    assert_eq!(untouched.take_events(), events);
+}
+
 #[test]
 fn the_sets_of_a_labels_point_are_those_that_few_arcs_leave() {
     // Two groups of four, 1 inside and 50 across: at the root the labels let them fall apart.

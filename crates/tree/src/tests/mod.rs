@@ -2,6 +2,7 @@
 
 mod acts;
 mod conflict;
+mod by_hand;
 mod cycles;
 mod endings;
 mod enumeration;

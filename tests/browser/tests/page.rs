@@ -44,3 +44,12 @@ mod looks;
 
 #[path = "page/mistakes.rs"]
 mod mistakes;
+
+#[path = "page/arranging.rs"]
+mod arranging;
+
+#[path = "page/keeping.rs"]
+mod keeping;
+
+#[path = "page/steering.rs"]
+mod steering;

@@ -3,6 +3,7 @@
 pub(crate) mod checks;
 pub(crate) mod frame;
 pub(crate) mod handover;
+pub(crate) mod kept;
 pub(crate) mod opinions;
 pub(crate) mod run;
 pub(crate) mod session;

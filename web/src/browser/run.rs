@@ -8,7 +8,9 @@ use gloo_timers::callback::Timeout;
 use record::message::{Envelope, LaneJob, Reply, Request, RunNumber};
 use record::opinion::Opinion;
 use record::results::Status;
+use record::scenario::Rival;
 
+use crate::browser::session::refusal;
 use crate::browser::worker::WorkerHandle;
 use crate::state::board::LaneAction;
 use crate::state::lane::Phase;
@@ -22,6 +24,38 @@ const PILE: usize = 20;
 /// A tree that the lane's run grows and its drawing reads.
 pub(crate) type TreeCell = Shared<RefCell<Tree>>;
 
+/// How far a search is led by itself when its lane is loaded anew.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Led {
+    /// To its end.
+    End,
+    /// To so many nodes.
+    Nodes(u32),
+}
+
+impl Led {
+    /// Where a job is led in a lane that ran `old`: to the last act by hand, and where only acts
+    /// are others at least as far as the old one came.
+    pub(crate) fn to(old: Option<&LaneRun>, job: &LaneJob) -> Self {
+        let last = job.rival.acts.iter().map(|act| act.after).max().unwrap_or(0);
+        match old.filter(|old| alike(&old.job, job)) {
+            Some(old) if old.to_end => Self::End,
+            Some(old) => Self::Nodes(last.max(old.tree.borrow().tally().solved)),
+            None => Self::Nodes(last),
+        }
+    }
+}
+
+/// Whether two jobs are the same but for the run's number, the title and acts by hand.
+fn alike(one: &LaneJob, other: &LaneJob) -> bool {
+    let bare = |job: &LaneJob| LaneJob {
+        run: RunNumber(0),
+        rival: Rival { title: String::new(), acts: Vec::new(), ..job.rival.clone() },
+        ..job.clone()
+    };
+    bare(one) == bare(other)
+}
+
 /// A lane's run.
 #[derive(Debug)]
 pub(crate) struct LaneRun {
@@ -31,6 +65,8 @@ pub(crate) struct LaneRun {
     pub(crate) job: LaneJob,
     /// The tree so far.
     pub(crate) tree: TreeCell,
+    /// The names of the columns, once they are known.
+    columns: Vec<String>,
     /// Replies not yet taken in.
     pub(crate) inbox: VecDeque<Envelope>,
     /// Runs out when Stop is not answered.
@@ -39,6 +75,12 @@ pub(crate) struct LaneRun {
     pub(crate) limit: Option<Timeout>,
     /// Nodes to search again below the root after the worker was replaced.
     pub(crate) replay: Option<u32>,
+    /// Runs out when a stop has waited long enough for the end of the node in hand.
+    pub(crate) grace: Option<Timeout>,
+    /// Whether a person's stop is on its way.
+    pub(crate) stopping: bool,
+    /// Whether a person let the search go to its end.
+    pub(crate) to_end: bool,
     /// Whether the root is solved: after that a request may fail, but not the rival.
     rooted: bool,
     /// Whether the search shall begin as soon as the root is solved.
@@ -54,10 +96,14 @@ impl LaneRun {
             worker,
             job,
             tree: Shared::new(RefCell::default()),
+            columns: Vec::new(),
             inbox: VecDeque::new(),
             watchdog: None,
             limit: None,
             replay: None,
+            grace: None,
+            stopping: false,
+            to_end: false,
             rooted: false,
             run_at_root: false,
             losses: 0,
@@ -77,7 +123,7 @@ impl LaneRun {
         self.job.run = RunNumber(self.job.run.0 + 1);
         self.tree = Shared::new(RefCell::default());
         self.inbox.clear();
-        (self.watchdog, self.limit) = (None, None);
+        self.rest();
         self.rooted = false;
         self.post(&Request::Load(Box::new(self.job.clone())));
         LaneAction::Load
@@ -106,7 +152,10 @@ impl LaneRun {
     /// What a reply does to the lane. Node details and relaxations are the session's.
     pub(crate) fn hear(&mut self, reply: Reply) -> Option<LaneAction> {
         match reply {
-            Reply::Understood(rival) => Some(LaneAction::Understood(*rival)),
+            Reply::Understood(rival) => {
+                self.columns.clone_from(&rival.column_names);
+                Some(LaneAction::Understood(*rival))
+            }
             Reply::Progress(progress) => Some(LaneAction::Progress(progress)),
             Reply::Root(root) => {
                 self.rooted = true;
@@ -120,7 +169,10 @@ impl LaneRun {
                 tree.grow(&events);
                 Some(LaneAction::Grown(tree.tally()))
             }
-            Reply::Paused(report) => Some(LaneAction::Paused(*report, self.settled())),
+            Reply::Paused(report) => {
+                self.to_end = false;
+                Some(LaneAction::Paused(*report, self.settled()))
+            }
             Reply::Done(report) => Some(LaneAction::Done(*report, self.settled())),
             Reply::Conflict(conflict) => {
                 self.watchdog = None;
@@ -131,7 +183,7 @@ impl LaneRun {
                 self.watchdog = None;
                 Some(LaneAction::Failed(error))
             }
-            Reply::Acted(acted) => acted.refused.map(LaneAction::Notice),
+            Reply::Acted(acted) => refusal(&acted, &self.columns).map(LaneAction::Notice),
             Reply::Relaxation(Err(why)) => Some(LaneAction::Second(Opinion::Silent(why))),
             Reply::Checked(_)
             | Reply::Relaxation(Ok(_))
@@ -144,10 +196,34 @@ impl LaneRun {
     }
 
     fn settled(&mut self) -> crate::state::tree::Tally {
-        (self.watchdog, self.limit) = (None, None);
+        self.rest();
         let mut tree = self.tree.borrow_mut();
         tree.settle();
         tree.tally()
+    }
+
+    /// Nothing is waited for any more.
+    fn rest(&mut self) {
+        (self.watchdog, self.limit, self.grace) = (None, None, None);
+        self.stopping = false;
+    }
+
+    /// Whether the root is solved.
+    pub(crate) fn is_rooted(&self) -> bool {
+        self.rooted
+    }
+
+    /// Whether this is what the lane works on, but for the run's number and the title.
+    pub(crate) fn runs(&self, job: &LaneJob) -> bool {
+        alike(&self.job, job) && self.job.rival.acts == job.rival.acts
+    }
+
+    /// Has the search led somewhere once the root is solved.
+    pub(crate) fn lead(&mut self, led: Led) {
+        match led {
+            Led::End => (self.run_at_root, self.to_end) = (true, true),
+            Led::Nodes(nodes) => self.replay = Some(nodes.saturating_sub(1)),
+        }
     }
 
     /// What follows once the root is solved: the search, where it was asked for already.
@@ -168,8 +244,10 @@ impl LaneRun {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::state::tree::tests::created;
+    use crate::state::tree::tests::{created, solved};
+    use record::event::NodeState;
     use record::results::ErrorReport;
+    use record::scenario::{Act, ActKind};
 
     fn envelope(run: u32, reply: Reply) -> Envelope {
         Envelope { run: RunNumber(run), sequence: 0, reply }
@@ -218,6 +296,36 @@ mod tests {
         assert!(matches!(lane.hear(Reply::Failed(error())), Some(LaneAction::Failed(_))));
         lane.rooted = true;
         assert!(matches!(lane.hear(Reply::Failed(error())), Some(LaneAction::Notice(_))));
+    }
+
+    fn acting(after: &[u32]) -> LaneJob {
+        let act = |&after: &u32| Act { after, what: ActKind::Close, node: None, on: Vec::new() };
+        let rival = Rival { acts: after.iter().map(act).collect(), ..Rival::default() };
+        LaneJob { rival, ..LaneJob::default() }
+    }
+
+    #[test]
+    fn a_lane_is_led_to_its_acts_and_as_far_as_it_was() {
+        assert_eq!(Led::to(None, &acting(&[])), Led::Nodes(0));
+        assert_eq!(Led::to(None, &acting(&[3, 9, 4])), Led::Nodes(9));
+        let mut lane = LaneRun::new(acting(&[3]), None);
+        lane.tree.borrow_mut().grow(&[created(1, 0), solved(1, NodeState::Branched, Some(1.0))]);
+        assert_eq!(Led::to(Some(&lane), &acting(&[])), Led::Nodes(1));
+        lane.to_end = true;
+        assert_eq!(Led::to(Some(&lane), &acting(&[])), Led::End);
+        let other = LaneJob { seed: 7, ..acting(&[2]) };
+        assert_eq!(Led::to(Some(&lane), &other), Led::Nodes(2));
+    }
+
+    /// A lane that had done an act itself was loaded anew when the document noted it.
+    #[test]
+    fn a_lane_goes_on_with_an_act_of_its_own_and_with_another_title() {
+        let mut lane = LaneRun::new(acting(&[3]), None);
+        let mut job = acting(&[3, 5]);
+        assert!(!lane.runs(&job));
+        lane.job.rival.acts.clone_from(&job.rival.acts);
+        job.rival.title = "Mine".to_owned();
+        assert!(lane.runs(&job));
     }
 
     #[test]

@@ -3,6 +3,10 @@
 //! One worker reads instances and lists the catalogue; every lane has one of its own. Replies
 //! are kept until the next frame and taken in then, at most one batch of events a lane.
 
+mod steer;
+
+pub(crate) use steer::refusal;
+
 use std::cell::RefCell;
 use std::collections::BTreeMap;
 use std::rc::{Rc, Weak};
@@ -14,18 +18,19 @@ use record::message::{
 };
 use record::opinion::Opinion;
 use record::results::ErrorReport;
-use record::scenario::InstanceText;
+use record::scenario::{Act, InstanceText};
 use yew::{Callback, UseReducerDispatcher};
 
 use crate::browser::checks::{Checks, unchecked};
 use crate::browser::frame::Frame;
 use crate::browser::opinions::{Opinions, Told};
-use crate::browser::run::{LaneRun, TreeCell};
+use crate::browser::run::{LaneRun, Led, TreeCell};
 use crate::browser::worker::{FromWorker, WorkerHandle};
 use crate::state::board::{Board, BoardAction, LaneAction};
 use crate::state::document::{Document, DocumentAction};
 use crate::state::lane::{LaneId, Phase};
 use crate::state::pointer::Shared;
+use crate::state::steer::Steer;
 
 /// How long a worker may take to answer to Stop, in milliseconds.
 const PATIENCE: u32 = 1000;
@@ -97,15 +102,24 @@ impl Session {
         }
     }
 
-    /// Loads a rival into a lane and solves its root; what ran there is given up.
+    /// Loads a rival into a lane and solves its root; what ran there is given up, unless it is
+    /// just this. A lane in which only acts by hand are others is led to where it was.
     pub(crate) fn load(&self, id: LaneId, job: LaneJob) {
+        if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id)
+            && lane.runs(&job)
+        {
+            return;
+        }
+        self.tell(id, LaneAction::Notice(String::new()));
         let action = {
             let mut inner = self.0.borrow_mut();
             inner.opinions.give_up(id);
             let old = inner.lanes.remove(&id);
             let run = old.as_ref().map(|lane| lane.job.run).unwrap_or_default();
+            let led = Led::to(old.as_ref(), &job);
             let worker = old.and_then(|lane| lane.worker).or_else(|| self.lane_worker(id));
             let mut lane = LaneRun::new(LaneJob { run, ..job }, worker);
+            lane.lead(led);
             let action = lane.load();
             let missing = lane.worker.is_none();
             inner.lanes.insert(id, lane);
@@ -132,6 +146,9 @@ impl Session {
 
     /// Searches on, to the end or for some nodes.
     pub(crate) fn search(&self, id: LaneId, nodes: Option<u32>) {
+        if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
+            lane.to_end = nodes.is_none();
+        }
         self.ask(id, &Request::Run { nodes }, Phase::Running);
         self.set_limit(id);
     }
@@ -164,7 +181,7 @@ impl Session {
                 lane.worker = self.lane_worker(id);
             }
             lane.losses = 0;
-            lane.run_at_root = true;
+            (lane.run_at_root, lane.to_end) = (true, true);
             lane.load()
         };
         self.tell(id, LaneAction::Notice(String::new()));
@@ -174,7 +191,7 @@ impl Session {
     /// Begins the search once a root that is being solved is there.
     pub(crate) fn search_when_ready(&self, id: LaneId) {
         if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
-            lane.run_at_root = true;
+            (lane.run_at_root, lane.to_end) = (true, true);
         }
     }
 
@@ -192,10 +209,9 @@ impl Session {
             }
         });
         if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
-            lane.run_at_root = false;
-            lane.post(&Request::Stop);
             lane.watchdog = Some(watchdog);
         }
+        self.ask_to_stop(id);
         self.tell(id, LaneAction::Asked(Phase::Stopping));
         self.stop_opinion(id);
     }
@@ -264,21 +280,23 @@ impl Session {
 
     /// Takes in what waits for this frame.
     fn take_in(&self) {
-        let (board, actions, begun, more) = {
+        let (board, document, taken, more) = {
             let inner = &mut *self.0.borrow_mut();
             inner.frame = None;
-            let (mut actions, mut begun) = (Vec::new(), Vec::new());
+            let mut taken = Taken::default();
             for (&id, lane) in &mut inner.lanes {
-                let begins = take_in_lane(id, lane, &mut inner.opinions, &mut actions);
-                begun.extend(begins.then_some(id));
+                take_in_lane(id, lane, &mut inner.opinions, &mut taken);
             }
             let more = inner.lanes.values().any(|lane| !lane.inbox.is_empty());
-            (inner.board.clone(), actions, begun, more)
+            (inner.board.clone(), inner.document.clone(), taken, more)
         };
-        for action in actions {
+        for action in taken.actions {
             board.dispatch(action);
         }
-        for id in begun {
+        for (id, act) in taken.acts {
+            document.dispatch(DocumentAction::Steer(Steer::Did(id, act)));
+        }
+        for id in taken.begun {
             self.set_limit(id);
         }
         if more {
@@ -409,14 +427,18 @@ fn upgrade(session: &Weak<RefCell<Inner>>) -> Option<Session> {
     session.upgrade().map(Session)
 }
 
-/// Takes in what waits for a lane; whether its search began with that.
-fn take_in_lane(
-    id: LaneId,
-    lane: &mut LaneRun,
-    opinions: &mut Opinions,
-    actions: &mut Vec<BoardAction>,
-) -> bool {
-    let mut begun = false;
+/// What is taken in before a frame.
+#[derive(Default)]
+struct Taken {
+    actions: Vec<BoardAction>,
+    /// Acts by hand that took effect.
+    acts: Vec<(LaneId, Act)>,
+    /// Lanes whose search began.
+    begun: Vec<LaneId>,
+}
+
+/// Takes in what waits for a lane.
+fn take_in_lane(id: LaneId, lane: &mut LaneRun, opinions: &mut Opinions, taken: &mut Taken) {
     for reply in lane.take() {
         let reply = match reply {
             Reply::Relaxation(Ok(relaxation)) => {
@@ -425,18 +447,18 @@ fn take_in_lane(
             }
             reply => reply,
         };
+        taken.acts.extend(steer::done_by_hand(lane, &reply).map(|act| (id, act)));
         if let Reply::Node(detail) = reply {
-            actions.push(BoardAction::Detail(id, *detail));
+            taken.actions.push(BoardAction::Detail(id, *detail));
             continue;
         }
         let rooted = matches!(reply, Reply::Root(_));
-        actions.extend(lane.hear(reply).map(|action| BoardAction::Lane(id, action)));
+        taken.actions.extend(lane.hear(reply).map(|action| BoardAction::Lane(id, action)));
         if let Some(action) = rooted.then(|| lane.after_root()).flatten() {
-            actions.push(BoardAction::Lane(id, action));
-            begun = true;
+            taken.actions.push(BoardAction::Lane(id, action));
+            taken.begun.push(id);
         }
     }
-    begun
 }
 
 fn out_of_time(seconds: f64) -> String {

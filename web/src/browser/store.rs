@@ -26,10 +26,29 @@ pub(crate) fn restore() -> Option<(Scenario, String)> {
     restored(&places).map(|(scenario, text)| (scenario, text.to_owned()))
 }
 
-/// Saves a scenario file; the reason in words when the browser does not.
-pub(crate) fn save(text: &str) -> Result<(), &'static str> {
-    let storage = storage().ok_or("its store is blocked")?;
+/// Why a scenario was not saved.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Unsaved {
+    /// Another tab has saved since.
+    OtherTab,
+    /// The browser does not, for this reason in words.
+    Refused(&'static str),
+}
+
+/// The number of what was saved last; 0 where nothing was.
+pub(crate) fn newest() -> u64 {
+    storage().map_or(0, |storage| next_place(&saved(&storage)).1 - 1)
+}
+
+/// Saves a scenario file over what this tab saved or opened last, whose number is `last`, and
+/// gives the new number.
+pub(crate) fn save(text: &str, last: u64) -> Result<u64, Unsaved> {
+    let storage = storage().ok_or(Unsaved::Refused("its store is blocked"))?;
     let (place, number) = next_place(&saved(&storage));
+    if number > last + 1 {
+        return Err(Unsaved::OtherTab);
+    }
     let text = Saved { number, text: text.to_owned() }.print();
-    storage.set_item(PLACES[place], &text).map_err(|_| "its store is full or blocked")
+    let stored = storage.set_item(PLACES[place], &text);
+    stored.map(|()| number).map_err(|_| Unsaved::Refused("its store is full or blocked"))
 }

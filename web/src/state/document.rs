@@ -3,10 +3,13 @@
 use std::rc::Rc;
 
 use crate::demo::demo;
+use crate::state::arrange::Arrange;
 use crate::state::editor::Edit;
 use crate::state::history::History;
 use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
+use crate::state::same::Made;
+use crate::state::steer::Steer;
 use record::file::{looks_like_a_scenario, parse};
 use record::message::{CatalogueEntry, InstanceReport};
 use record::scenario::{FamilyState, InstanceText, Rival, Role, Run, Scenario, letter};
@@ -70,6 +73,8 @@ pub(crate) struct Document {
     pub(crate) catalogue: Shared<Vec<CatalogueEntry>>,
     /// The scenario it was opened from: what the page does not edit is kept there.
     pub(crate) rest: Shared<Scenario>,
+    /// What it was made with, where it was opened with results.
+    pub(crate) made: Option<Made>,
     /// What can be undone and redone.
     pub(crate) history: Shared<History>,
     next: u32,
@@ -104,6 +109,10 @@ pub(crate) enum DocumentAction {
     Family(LaneId, String, FamilyState),
     /// A rival is written or copied.
     Edit(Edit),
+    /// The order or a title is another.
+    Arrange(Arrange),
+    /// What was done by hand is another.
+    Steer(Steer),
 }
 
 impl Document {
@@ -127,12 +136,14 @@ impl Document {
             slots: Vec::new(),
             catalogue: Shared::new(Vec::new()),
             rest: Shared::new(scenario),
+            made: None,
             history: Shared::new(History::default()),
             next,
         };
         for rival in rivals {
             document.push(rival);
         }
+        document.made = Made::of(&document);
         document
     }
 
@@ -207,6 +218,9 @@ impl Document {
         {
             self.notes = Shared::new(String::new());
         }
+        if another {
+            self.forget_acts();
+        }
         if another && !self.titled {
             self.title =
                 if report.title.is_empty() { UNTITLED.to_owned() } else { report.title.clone() };
@@ -218,6 +232,7 @@ impl Document {
         let Some(slot) = self.slots.iter_mut().find(|slot| slot.id == id) else { return };
         let mut rival = (*slot.rival).clone();
         rival.families.insert(family, state);
+        rival.acts.clear();
         slot.rival = Shared::new(rival);
     }
 }
@@ -287,6 +302,8 @@ impl Document {
             DocumentAction::Remove(id) => document.slots.retain(|slot| slot.id != id),
             DocumentAction::Family(id, family, state) => document.set_family(id, family, state),
             DocumentAction::Edit(edit) => document.edit(edit),
+            DocumentAction::Arrange(arrange) => document.arrange(arrange),
+            DocumentAction::Steer(steer) => document.steer(steer),
         }
         document.into()
     }

@@ -84,6 +84,8 @@ fn change(document: &Document, action: &DocumentAction) -> Option<Change> {
         DocumentAction::Family(..) => done("state of a family"),
         DocumentAction::Open(_) => done("scenario that was opened"),
         DocumentAction::Edit(edit) => done(edit.words()),
+        DocumentAction::Arrange(arrange) => done(arrange.words()),
+        DocumentAction::Steer(steer) => done(steer.words()),
         DocumentAction::Read(..)
         | DocumentAction::Catalogue(_)
         | DocumentAction::Undo

@@ -1,17 +1,21 @@
 //! What the page knows, without the page: reducers and the trees as they grow. Nothing here
 //! touches a document, so that all of it is tested natively.
 
+pub(crate) mod arrange;
 pub(crate) mod board;
 pub(crate) mod commands;
 pub(crate) mod document;
 pub(crate) mod editor;
 pub(crate) mod highlight;
 pub(crate) mod history;
+pub(crate) mod kept;
 pub(crate) mod lane;
 pub(crate) mod outline;
 pub(crate) mod places;
 pub(crate) mod pointer;
+pub(crate) mod same;
 pub(crate) mod share;
+pub(crate) mod steer;
 pub(crate) mod tree;
 pub(crate) mod typeset;
 pub(crate) mod words;

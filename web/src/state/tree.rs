@@ -109,10 +109,18 @@ impl Tree {
         });
         if let Some(at) = parent {
             self.adopt(at, place);
+            self.release(at);
         }
         self.layout.push(parent);
         self.tally.made += 1;
         self.tally.open += 1;
+    }
+
+    /// A node that was solved and waited for its branching has it now.
+    fn release(&mut self, place: usize) {
+        if self.nodes[place].solved && self.nodes[place].state == NodeState::Open {
+            self.set_state(Self::number(place), NodeState::Branched);
+        }
     }
 
     fn adopt(&mut self, parent: usize, child: u32) {
@@ -284,6 +292,15 @@ pub(crate) mod tests {
         assert_eq!(tree.neighbour(1, true), None);
         assert_eq!(tree.parent(0), None);
         assert_eq!((tree.path(2).len(), tree.path(0).len()), (1, 0));
+    }
+
+    #[test]
+    fn a_node_that_waits_for_its_branching_is_open_until_it_has_children() {
+        let mut tree = Tree::default();
+        tree.grow(&[created(1, 0), solved(1, NodeState::Open, Some(10.0))]);
+        assert_eq!((tree.tally().open, tree.nodes()[0].state), (1, NodeState::Open));
+        tree.grow(&[created(2, 1), created(3, 1)]);
+        assert_eq!((tree.tally().open, tree.nodes()[0].state), (2, NodeState::Branched));
     }
 
     #[test]

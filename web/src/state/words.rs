@@ -1,7 +1,7 @@
 //! The page's sentences about a run, without marks.
 
 use record::event::{Branching, NodeState, Side};
-use record::results::{RootReport, SearchReport, Status};
+use record::results::{RootReport, SearchReport, Status, WAITS};
 use record::scenario::FamilyState;
 use report::number::{of, short};
 
@@ -15,7 +15,7 @@ pub(crate) fn status(lane: &Lane) -> String {
         Phase::Ready => ready(lane.root.as_deref()),
         Phase::Running => format!("searching: {}", counts(lane)),
         Phase::Pausing => "pausing".to_owned(),
-        Phase::Paused => format!("paused: {}", counts(lane)),
+        Phase::Paused => paused(lane),
         Phase::Explaining => format!(
             "{}; looking for the families that cannot hold together",
             no_plan(&of(u64::from(lane.nodes()), "node"))
@@ -55,6 +55,12 @@ fn ready(root: Option<&RootReport>) -> String {
     text.to_owned()
 }
 
+fn paused(lane: &Lane) -> String {
+    let waits = lane.search.as_ref().is_some_and(|search| search.stopped.as_deref() == Some(WAITS));
+    let why = if waits { "; every open node waits for a branching by hand" } else { "" };
+    format!("paused: {}{why}", counts(lane))
+}
+
 fn done(lane: &Lane) -> String {
     let nodes = of(u64::from(lane.nodes()), "node");
     match lane.search.as_deref() {
@@ -73,7 +79,7 @@ fn ended(search: &SearchReport, nodes: &str) -> String {
         Status::Unbounded => "the objective has no bound".to_owned(),
         Status::Limit => {
             let why = match search.stopped.as_deref() {
-                Some("stopped") => "by hand",
+                Some("stopped" | "stopped by hand") => "by hand",
                 Some(why) => why,
                 None => "a limit",
             };

@@ -15,6 +15,7 @@ const PAUSE: f64 = 2000.0;
 
 #[derive(Properties, PartialEq)]
 pub(crate) struct AnnouncerProps {
+    pub(crate) document: Document,
     pub(crate) board: Board,
 }
 
@@ -24,7 +25,7 @@ pub(crate) fn Announcer(props: &AnnouncerProps) -> Html {
     let said = use_state_eq(String::new);
     let last = use_mut_ref(|| -PAUSE);
     let phases: Vec<Phase> = props.board.lanes.values().map(|lane| lane.phase).collect();
-    let sentence = sentence(&props.board);
+    let sentence = sentence(&props.document, &props.board);
     let say = said.setter();
     use_effect_with(phases, move |_| {
         let wait = PAUSE - (now() - *last.borrow());
@@ -38,12 +39,10 @@ pub(crate) fn Announcer(props: &AnnouncerProps) -> Html {
     html! { <p class="unseen" role="status" data-testid="announcer">{ (*said).clone() }</p> }
 }
 
-fn sentence(board: &Board) -> String {
-    let parts: Vec<String> = board
-        .lanes
-        .values()
-        .enumerate()
-        .map(|(place, lane)| format!("{}: {}", Document::letter(place), status(lane)))
+fn sentence(document: &Document, board: &Board) -> String {
+    let lanes = document.slots.iter().map(|slot| board.lane(slot.id)).enumerate();
+    let parts: Vec<String> = lanes
+        .map(|(place, lane)| format!("{}: {}", Document::letter(place), status(&lane)))
         .collect();
     parts.join(". ")
 }

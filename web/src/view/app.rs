@@ -5,6 +5,7 @@ use yew::prelude::*;
 use crate::browser::session::Session;
 use crate::state::board::Board;
 use crate::state::document::{Document, DocumentAction};
+use crate::state::same::Found;
 use crate::view::announcer::Announcer;
 use crate::view::evidence::Evidence;
 use crate::view::hands::Hands;
@@ -12,7 +13,7 @@ use crate::view::inspector::Inspector;
 use crate::view::instance::Instance;
 use crate::view::notes::Notes;
 use crate::view::rivals::Rivals;
-use crate::view::share::{Share, opening};
+use crate::view::share::{Share, Verdict, opening};
 
 /// The page.
 #[component]
@@ -27,10 +28,13 @@ pub(crate) fn App() -> Html {
     });
     let document = (*document).clone();
     let board = (*board).clone();
+    let found = Found::on(&document, &board);
+    let digest = use_memo(found.clone(), Found::digest);
     html! {
         <ContextProvider<Hands> context={(*hands).clone()}>
             <Header title={document.title.clone()} />
-            <Share document={document.clone()} opening={(*opening).clone()} />
+            <Share document={document.clone()} opening={(*opening).clone()} digest={(*digest).clone()} />
+            <Verdict document={document.clone()} {found} />
             <main>
                 <Instance document={document.clone()} />
                 <Rivals document={document.clone()} board={board.clone()} />
@@ -38,7 +42,7 @@ pub(crate) fn App() -> Html {
                 <Evidence document={document.clone()} board={board.clone()} />
                 <Notes notes={document.notes.clone()} />
             </main>
-            <Announcer {board} />
+            <Announcer {document} {board} />
         </ContextProvider<Hands>>
     }
 }

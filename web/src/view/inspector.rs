@@ -3,6 +3,7 @@
 
 use record::event::{Branching, NodeState};
 use record::message::{NodeDetail, RivalReport, ViolatedSubset};
+use record::scenario::{Act, ActKind};
 use report::number::{fixed, full, of, short};
 use wasm_bindgen::JsCast;
 use web_sys::HtmlElement;
@@ -11,10 +12,12 @@ use yew::prelude::*;
 use crate::state::board::{Board, Selection};
 use crate::state::document::{Accepted, Document};
 use crate::state::pointer::Shared;
+use crate::state::steer::column_words;
 use crate::state::words::{branching, node_state};
 use crate::view::hands::{Hands, use_hands};
 use crate::view::picture::{Pictures, cycle_words};
 use crate::view::rivals::HUES;
+use crate::view::steering::{Steering, SteeringProps, cut, doing, may_add};
 use crate::view::values::Values;
 
 /// The id of its heading.
@@ -49,30 +52,46 @@ pub(crate) fn Inspector(props: &InspectorProps) -> Html {
     let drawn = use_state_eq(String::new);
     let selection = props.board.selection;
     let node = selection.and_then(|at| known(hands.as_ref()?, at));
-    let wanted = node.as_ref().filter(|node| node.solved).map(|node| node.state);
-    use_effect_with((selection, wanted), move |(selection, wanted)| {
-        if let (Some(hands), Some(at), Some(_)) = (hands, selection, wanted) {
-            hands.session.inspect(at.lane, at.node);
-        }
-    });
-    let Some(at) = selection else { return Html::default() };
-    let place = props.document.slots.iter().position(|slot| slot.id == at.lane);
-    let Some(place) = place else { return Html::default() };
+    let place =
+        selection.and_then(|at| props.document.slots.iter().position(|slot| slot.id == at.lane));
+    let acts = place.map_or(0, |place| props.document.slots[place].rival.acts.len());
+    let is_shown = |node: &&Known| node.solved || node.state == NodeState::Open;
+    let wanted = node.as_ref().filter(is_shown).map(|node| (node.state, node.solved, acts));
+    let is_known = wanted.is_some();
+    {
+        let hands = hands.clone();
+        use_effect_with((selection, wanted), move |(selection, wanted)| {
+            if let (Some(hands), Some(at), Some(_)) = (hands, selection, wanted) {
+                hands.session.inspect(at.lane, at.node);
+            }
+        });
+    }
+    let (Some(at), Some(place)) = (selection, place) else { return Html::default() };
+    let lane = props.board.lane(at.lane);
+    let act = doing(hands.as_ref(), at, &lane);
+    let chosen = chosen(&props.document.slots[place].rival.acts, at.node.0, lane.rival.as_deref());
     html! {
         <section
             class={classes!("node", format!("hue-{}", place % HUES))} aria-labelledby={HEADING}
             data-testid="inspector"
         >
             <h2 id={HEADING} tabindex="-1">{ heading(at, place) }</h2>
-            if let (Some(detail), Some(accepted)) = (props.board.detail.clone(), props.document.accepted.clone()) {
-                <Detail {detail} {accepted} rival={props.board.lane(at.lane).rival.clone()} {drawn} />
-            } else if let Some(node) = node.filter(|node| !node.solved) {
-                { unsolved(&node, props.board.lane(at.lane).rival.as_deref()) }
+            if let (Some(detail), Some(accepted)) = (props.board.detail.clone().filter(|_| is_known), props.document.accepted.clone()) {
+                <Detail {detail} {accepted} rival={lane.rival.clone()} {drawn} {act} {chosen} />
+            } else if let Some(node) = node.filter(|node| !node.solved && node.state != NodeState::Open) {
+                { unsolved(&node, lane.rival.as_deref()) }
             } else {
                 <p class="soft">{ "Asking the worker for this node…" }</p>
             }
         </section>
     }
+}
+
+/// The column on which a person wants a node branched.
+fn chosen(acts: &[Act], node: u32, rival: Option<&RivalReport>) -> Option<String> {
+    let here = |act: &&Act| act.what == ActKind::Branch && act.node == Some(node);
+    let columns = rival.map_or(&[][..], |rival| rival.column_names.as_slice());
+    acts.iter().rev().find(here).map(|act| column_words(&act.on, columns))
 }
 
 /// What the page knows of a node without its worker.
@@ -115,6 +134,9 @@ struct DetailProps {
     accepted: Accepted,
     rival: Option<Shared<RivalReport>>,
     drawn: UseStateHandle<String>,
+    /// Does an act by hand; `None` once the search has ended.
+    act: Option<Callback<Act>>,
+    chosen: Option<String>,
 }
 
 #[component]
@@ -140,9 +162,10 @@ fn Detail(props: &DetailProps) -> Html {
                 <p>{ sentence(detail) }</p>
                 { bound(detail) }
                 { path(&detail.path, props.rival.as_deref()) }
-                { violated(&detail.violated, *set, &show) }
+                { violated(props, *set, &show) }
                 { cycle(detail, &report.unit) }
                 { ray(detail) }
+                <Steering ..SteeringProps::of(detail, props.chosen.clone(), props.act.clone()) />
             </div>
             <Pictures
                 detail={detail.clone()} report={report.clone()} drawn={props.drawn.clone()} set={tint}
@@ -151,7 +174,7 @@ fn Detail(props: &DetailProps) -> Html {
             if !detail.values.is_empty() {
             <Values
                 detail={detail.clone()} rival={props.rival.clone()} unit={report.unit.clone()}
-                column={*column} {choose}
+                column={*column} {choose} act={props.act.clone()}
             />
             }
         </div>
@@ -167,6 +190,17 @@ fn sentence(detail: &NodeDetail) -> String {
         format!(", {}", of(u64::from(detail.depth), "branching") + " deep")
     };
     let state = node_state(detail.state);
+    if detail.ahead && (detail.bound.is_some() || !detail.ray.is_empty()) {
+        let begun =
+            format!("This node is {state}{depth}. The search has not solved it; its relaxation");
+        return match (detail.bound, fractional) {
+            (None, _) => format!("{begun} has no point."),
+            (Some(_), 0) => format!("{begun} would leave no variable fractional."),
+            (Some(_), some) => {
+                format!("{begun} would leave {} fractional.", of(some, "variable"))
+            }
+        };
+    }
     if detail.bound.is_none() {
         return format!("This node is {state}{depth}.");
     }
@@ -211,7 +245,8 @@ fn path(steps: &[Branching], rival: Option<&RivalReport>) -> Html {
     }
 }
 
-fn violated(sets: &[ViolatedSubset], shown: Option<usize>, show: &Callback<usize>) -> Html {
+fn violated(props: &DetailProps, shown: Option<usize>, show: &Callback<usize>) -> Html {
+    let sets = props.detail.violated.as_slice();
     if sets.is_empty() {
         return Html::default();
     }
@@ -230,10 +265,14 @@ fn violated(sets: &[ViolatedSubset], shown: Option<usize>, show: &Callback<usize
                         <button type="button" class="link" onclick={press(index)}
                             aria-pressed={if shown == Some(index) { "true" } else { "false" }}
                         >{ set.subset.join(", ") }</button>
+                        { add_row(props, set) }
                     </li>
                 }
                 if more > 0 { <li class="soft">{ format!("and {more} more") }</li> }
             </ul>
+            if !sets.iter().any(|set| may_add(props.rival.as_deref(), set)) {
+                <p class="small soft">{ "This rival has no such family on demand, so their rows cannot be added by hand." }</p>
+            }
         </>
     }
 }
@@ -252,6 +291,18 @@ fn cycle(detail: &NodeDetail, unit: &str) -> Html {
             <p data-testid="cycle">{ cycle_words(cycle, unit) }</p>
             <p class="small soft">{ why }</p>
         </>
+    }
+}
+
+/// "Add this row", where the set's family is on demand.
+fn add_row(props: &DetailProps, set: &ViolatedSubset) -> Html {
+    let act = props.act.as_ref().filter(|_| may_add(props.rival.as_deref(), set));
+    let Some(act) = act else { return Html::default() };
+    let row = cut(set);
+    let onclick = act.reform(move |_: MouseEvent| row.clone());
+    let label = format!("Add this row, {} of {}", set.family, set.subset.join(", "));
+    html! {
+        <>{ " " }<button type="button" class="add-row" {onclick} aria-label={label}>{ "Add this row" }</button></>
     }
 }
 

@@ -14,14 +14,17 @@ use crate::state::document::{DocumentAction, Slot};
 use crate::state::editor::Draft;
 use crate::state::lane::{Lane, LaneId, Phase};
 use crate::state::pointer::Shared;
+use crate::state::steer::{Steer, is_stopped};
 use crate::state::words::{advice, sentence, status};
+use crate::view::acts::Acts;
 use crate::view::canvas::TreeCanvas;
 use crate::view::editor::{Editor, toggle};
 use crate::view::families::Families;
 use crate::view::figure::{figure, gap, share};
 use crate::view::handover::TakeAway;
 use crate::view::hands::{Hands, use_hands};
-use crate::view::inspector::{focus, focus_inspector};
+use crate::view::inspector::focus_inspector;
+use crate::view::lane_name::LaneName;
 use crate::view::paint::Scene;
 use crate::view::reason::reason;
 use crate::view::ruler::Ruler;
@@ -63,7 +66,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
             data-lane={props.letter.clone()} aria-label={format!("{}, {}", props.letter, props.title)}
         >
             <div class="lane-side">
-                { name(props, hands.as_ref()) }
+                <LaneName id={props.slot.id} letter={props.letter.clone()} title={props.title.clone()} />
                 if !props.source.is_empty() { <p class="small soft">{ props.source.clone() }</p> }
                 if let Some(rival) = &props.lane.rival {
                     <p class="small soft" data-testid="size" title={of(rival.nonzeros, "coefficient")}>{ size(rival) }</p>
@@ -74,6 +77,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 }
                 { figures(props) }
                 { second(&props.lane) }
+                <Acts slot={props.slot.clone()} letter={props.letter.clone()} rival={props.lane.rival.clone()} />
                 <p class="small" data-testid="status">{ status(&props.lane) }</p>
                 if !props.lane.notice.is_empty() {
                     <p class="small warn" data-testid="notice">{ props.lane.notice.clone() }</p>
@@ -116,9 +120,9 @@ fn use_loading(props: &LaneProps, hands: Option<Hands>) {
     let (run, seed, rival) = (props.run.clone(), props.seed, props.slot.rival.clone());
     {
         let session = session.clone();
-        use_effect_with((props.text.clone(), rival), move |(text, rival)| {
+        use_effect_with((props.text.clone(), rival, run), move |(text, rival, run)| {
             if let (Some(session), Some(text)) = (session, text) {
-                session.load(id, job(Some((**text).clone()), rival, &run, seed));
+                session.load(id, job(Some((**text).clone()), rival, run, seed));
             }
         });
     }
@@ -129,25 +133,6 @@ fn use_loading(props: &LaneProps, hands: Option<Hands>) {
             }
         }
     });
-}
-
-/// The letter, the title, and the button that takes the rival away.
-fn name(props: &LaneProps, hands: Option<&Hands>) -> Html {
-    let id = props.slot.id;
-    let document = hands.map(|hands| hands.document.clone());
-    let onclick = Callback::from(move |_: MouseEvent| {
-        if let Some(document) = &document {
-            document.dispatch(DocumentAction::Remove(id));
-            focus(crate::view::rivals::HEADING);
-        }
-    });
-    let remove = format!("Remove {}, {}", props.letter, props.title);
-    html! {
-        <div class="lane-name">
-            <h3><span class="letter">{ props.letter.clone() }</span><span>{ props.title.clone() }</span></h3>
-            <button type="button" class="link soft" data-testid="remove" aria-label={remove} {onclick}>{ "Remove" }</button>
-        </div>
-    }
 }
 
 fn size(rival: &RivalReport) -> String {
@@ -228,6 +213,10 @@ fn buttons(props: &LaneProps, hands: &Hands) -> Html {
     };
     let over = is_over(&props.lane);
     let run: fn(&Hands, Selection) = match phase {
+        Phase::Done if is_stopped(&props.slot.rival) => |hands, at| {
+            hands.session.want_end(at.lane);
+            hands.document.dispatch(DocumentAction::Steer(Steer::GoOn(at.lane)));
+        },
         Phase::Done | Phase::Failed => |hands, at| hands.session.search_anew(at.lane),
         _ => |hands, at| hands.session.search(at.lane, None),
     };

@@ -1,5 +1,6 @@
 //! Components, one idea a file.
 
+pub(crate) mod acts;
 pub(crate) mod announcer;
 pub(crate) mod app;
 pub(crate) mod axis;
@@ -18,6 +19,7 @@ pub(crate) mod hands;
 pub(crate) mod inspector;
 pub(crate) mod instance;
 pub(crate) mod lane;
+pub(crate) mod lane_name;
 pub(crate) mod map;
 pub(crate) mod notes;
 pub(crate) mod paint;
@@ -25,9 +27,11 @@ pub(crate) mod paste;
 mod picture;
 pub(crate) mod reason;
 pub(crate) mod rivals;
+pub(crate) mod rule;
 pub(crate) mod ruler;
 pub(crate) mod second;
 pub(crate) mod share;
+pub(crate) mod steering;
 pub(crate) mod twin;
 pub(crate) mod typeset;
 pub(crate) mod values;

@@ -1,6 +1,7 @@
 //! The values of a node's relaxation: fractional ones first, each with cost and reduced cost.
 
 use record::message::{ColumnValue, NodeDetail, RivalReport};
+use record::scenario::{Act, ActKind};
 use report::number::{fixed, full, of};
 use yew::prelude::*;
 
@@ -19,6 +20,8 @@ pub(crate) struct ValuesProps {
     pub(crate) unit: String,
     pub(crate) column: Option<u32>,
     pub(crate) choose: Callback<Option<u32>>,
+    /// Does an act by hand; `None` where nothing may be done.
+    pub(crate) act: Option<Callback<Act>>,
 }
 
 /// The table.
@@ -27,6 +30,7 @@ pub(crate) fn Values(props: &ValuesProps) -> Html {
     let all = use_state_eq(|| false);
     let values = use_memo(props.detail.clone(), |detail| sorted(&detail.values));
     let fractional = values.iter().filter(|value| value.fractional).count();
+    let may_branch = props.act.is_some() && values.iter().any(|value| !value.on.is_empty());
     let limit = if *all { MOST } else { SHOWN };
     let more = {
         let (all, open) = (all.setter(), *all);
@@ -42,9 +46,10 @@ pub(crate) fn Values(props: &ValuesProps) -> Html {
                     <th scope="col">{ "value" }</th>
                     <th scope="col">{ cost.to_owned() }</th>
                     <th scope="col">{ "reduced cost" }</th>
+                    if may_branch { <th scope="col">{ "by hand" }</th> }
                 </tr></thead>
                 <tbody>
-                    for value in values.iter().take(limit) { { row(props, value) } }
+                    for value in values.iter().take(limit) { { row(props, value, may_branch) } }
                 </tbody>
             </table>
             if values.len() > SHOWN {
@@ -70,11 +75,31 @@ fn sorted(values: &[ColumnValue]) -> Vec<ColumnValue> {
     sorted
 }
 
-fn row(props: &ValuesProps, value: &ColumnValue) -> Html {
+/// "Branch", where the column may be branched on.
+fn branch(props: &ValuesProps, value: &ColumnValue, name: &str) -> Html {
+    let Some(act) = props.act.as_ref().filter(|_| !value.on.is_empty()) else {
+        return Html::default();
+    };
+    let (node, on) = (Some(props.detail.node.0), value.on.clone());
+    let onclick = act.reform(move |_: MouseEvent| Act {
+        after: 0,
+        what: ActKind::Branch,
+        node,
+        on: on.clone(),
+    });
+    html! {
+        <button
+            type="button" class="link" {onclick} aria-label={format!("Branch here on {name}")}
+        >{ "Branch" }</button>
+    }
+}
+
+fn row(props: &ValuesProps, value: &ColumnValue, may_branch: bool) -> Html {
     let column = value.column;
     let chosen = props.column == Some(column);
     let name = props.rival.as_ref().and_then(|rival| rival.column_names.get(column as usize));
     let name = name.map_or_else(|| format!("column {}", column + 1), Clone::clone);
+    let by_hand = branch(props, value, &name);
     let choose = props.choose.clone();
     let onclick = Callback::from(move |_: MouseEvent| choose.emit((!chosen).then_some(column)));
     html! {
@@ -85,6 +110,7 @@ fn row(props: &ValuesProps, value: &ColumnValue) -> Html {
             <td><data value={value.value.to_string()} title={full(value.value)}>{ fixed(value.value, 3) }</data></td>
             <td>{ figure(Some(value.cost)) }</td>
             <td>{ figure(Some(value.reduced_cost)) }</td>
+            if may_branch { <td>{ by_hand }</td> }
         </tr>
     }
 }
@@ -101,6 +127,7 @@ mod tests {
             reduced_cost: 0.0,
             cost: 1.0,
             fractional,
+            on: Vec::new(),
         };
         let order: Vec<u32> =
             sorted(&[value(0, 1.0, false), value(1, 0.2, true), value(2, 0.8, true)])

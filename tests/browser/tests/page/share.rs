@@ -5,18 +5,24 @@ use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::visit::{Source, visit};
 use record::file::parse;
 use record::link::{pack, unpack};
+use record::scenario::Scenario;
 use serde_json::json;
 
 use crate::lanes::{paste, status, value};
 
 const SCENARIO: &str = include_str!("../../fixtures/nine-points.toml");
 
-async fn press(browser: &Browser, name: &str) -> Outcome<()> {
+pub(crate) async fn press(browser: &Browser, name: &str) -> Outcome<()> {
     Ok(browser.select(&format!("[data-testid={name}]")).await?.click().await?)
 }
 
+/// A scenario without what it says of its results.
+fn without_results(text: &str) -> Option<Scenario> {
+    parse(text).scenario.map(|scenario| Scenario { engine: None, digest: None, ..scenario })
+}
+
 /// What is said about links, files and the store.
-async fn says(browser: &Browser, words: &str) -> Outcome<()> {
+pub(crate) async fn says(browser: &Browser, words: &str) -> Outcome<()> {
     let script = "return document.querySelector('[data-testid=share-notice]').textContent";
     let what = format!("the notice says {words:?}");
     browser
@@ -27,7 +33,7 @@ async fn says(browser: &Browser, words: &str) -> Outcome<()> {
 }
 
 /// Opens the page anew in the same browser.
-async fn reload(browser: &Browser) -> Outcome<()> {
+pub(crate) async fn reload(browser: &Browser) -> Outcome<()> {
     browser.script("globalThis.before = true; setTimeout(() => location.reload(), 0)").await?;
     let opened = "return !globalThis.before && document.documentElement?.dataset.boot === 'done'";
     browser
@@ -52,7 +58,7 @@ async fn bounds_become(browser: &Browser, expected: &[Option<f64>]) -> Outcome<(
 }
 
 /// A link copied where the browser does not let the page copy.
-async fn copied_by_hand(browser: &Browser) -> Outcome<String> {
+pub(crate) async fn copied_by_hand(browser: &Browser) -> Outcome<String> {
     browser.script("navigator.clipboard.writeText = () => Promise.reject(new Error('no'))").await?;
     press(browser, "copy-link").await?;
     browser.shows("whoever has it can read them").await?;
@@ -79,7 +85,7 @@ async fn a_link_opens_to_the_same_root_bounds() -> Outcome<()> {
         Ok(())
     })
     .await?;
-    assert_eq!(parse(&unpack(&link)?).scenario, parse(SCENARIO).scenario);
+    assert_eq!(without_results(&unpack(&link)?), parse(SCENARIO).scenario);
     assert!(there.iter().all(Option::is_some), "{there:?}");
     let fragment = &link[link.find('#').unwrap_or(0)..];
     visit(Source::File, async |browser| {
@@ -90,6 +96,52 @@ async fn a_link_opens_to_the_same_root_bounds() -> Outcome<()> {
         reload(browser).await?;
         says(browser, "Opened from the link").await?;
         bounds_become(browser, &there).await
+    })
+    .await
+}
+
+/// What the page says of results that were there when the link was made.
+async fn verdict(browser: &Browser, words: &str) -> Outcome<()> {
+    let script = "return document.querySelector('[data-testid=verdict]').textContent";
+    let what = format!("the verdict says {words:?}");
+    let said = async || Ok(browser.script(script).await?.as_str().unwrap_or("").contains(words));
+    browser.until(&what, std::time::Duration::from_secs(60), said).await
+}
+
+/// Opens a scenario by a link in the address.
+async fn open_link(browser: &Browser, scenario: &Scenario) -> Outcome<()> {
+    let link = pack(&record::file::print(scenario))?;
+    browser.script_with("location.hash = arguments[0]", vec![json!(link)]).await?;
+    says(browser, "Opened from the link").await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_link_says_whether_the_results_are_the_same() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        paste(browser, SCENARIO).await?;
+        browser.shows("9 stops, 72 drives").await?;
+        bounds(browser).await?;
+        crate::lanes::button(browser, "B", "run").await?.click().await?;
+        status(browser, "B", "closed").await?;
+        let link = copied_by_hand(browser).await?;
+        let made = parse(&unpack(&link)?).scenario.ok_or("the link holds no scenario")?;
+        let digest = made.digest.clone().ok_or("the link has no digest")?;
+        assert!(digest.contains('/') && made.engine.is_some(), "{digest}");
+        open_link(browser, &made).await?;
+        verdict(browser, "Same results so far as when this was made; B came further then.").await?;
+        crate::lanes::button(browser, "B", "run").await?.click().await?;
+        verdict(browser, "Same results as when this was made.").await?;
+        // One digit of the search's digest is another, and an older engine is said to have made it.
+        let mut words: Vec<String> = digest.split(' ').map(str::to_owned).collect();
+        let last = if words[1].pop() == Some('0') { '1' } else { '0' };
+        words[1].push(last);
+        let tampered = words.join(" ");
+        let engine = Some("0.0.1".to_owned());
+        open_link(browser, &Scenario { digest: Some(tampered), engine, ..made }).await?;
+        verdict(browser, "made with engine 0.0.1").await?;
+        bounds(browser).await?;
+        crate::lanes::button(browser, "B", "run").await?.click().await?;
+        verdict(browser, "Differs from the results that this was made with: B, the search").await
     })
     .await
 }
@@ -195,7 +247,7 @@ async fn a_file_is_saved_and_opened() -> Outcome<()> {
         let read = "globalThis.blob.text().then(arguments[arguments.length - 1])";
         let text = browser.script_async(read, Vec::new()).await?;
         let text = text.as_str().unwrap_or_default();
-        assert_eq!(parse(text).scenario, parse(SCENARIO).scenario);
+        assert_eq!(without_results(text), parse(SCENARIO).scenario);
         std::fs::write(&file, text)?;
         browser.script("document.querySelector('[data-testid=notes]').focus()").await?;
         let input = browser.select("[data-testid=open-file]").await?;

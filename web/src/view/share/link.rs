@@ -12,6 +12,7 @@ use crate::view::share::notice::Notice;
 #[derive(Properties, PartialEq)]
 pub(crate) struct LinkProps {
     pub(crate) document: Document,
+    pub(crate) digest: Option<String>,
     pub(crate) save: Callback<()>,
     pub(crate) close: Callback<Option<Notice>>,
 }
@@ -28,8 +29,8 @@ pub(crate) fn LinkPanel(props: &LinkProps) -> Html {
             let _ = button.focus();
         }
     });
-    let link = use_memo(props.document.edited(), |_| {
-        pack(&props.document.file()).map(|fragment| address() + &fragment)
+    let link = use_memo((props.document.edited(), props.digest.clone()), |(_, digest)| {
+        pack(&props.document.file_with(digest.as_ref())).map(|fragment| address() + &fragment)
     });
     let press = {
         let (link, close, refused) = (link.clone(), props.close.clone(), refused.setter());

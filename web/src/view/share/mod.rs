@@ -5,12 +5,16 @@
 //! | `link` | the panel that a link is copied from |
 //! | `open` | opening files, by a button or dropped anywhere |
 //! | `keep` | saving by itself, restoring, and other tabs |
+//! | `kept` | the list of scenarios kept by name |
 //! | `notice` | what is said about all that |
+//! | `verdict` | whether results are those the link or file was made with |
 
 mod keep;
+mod kept;
 mod link;
 mod notice;
 mod open;
+mod verdict;
 
 use yew::prelude::*;
 
@@ -20,8 +24,10 @@ use crate::state::share::file_name;
 use crate::view::hands::use_hands;
 
 pub(crate) use keep::{Opening, opening};
+pub(crate) use verdict::Verdict;
 
 use keep::{use_keeping, use_links};
+use kept::KeptPanel;
 use link::LinkPanel;
 use notice::{Notice, NoticeView};
 use open::{OpenFile, use_drop};
@@ -33,6 +39,8 @@ const COPY: &str = "copy-link";
 pub(crate) struct ShareProps {
     pub(crate) document: Document,
     pub(crate) opening: Opening,
+    /// The digest of the results that are there.
+    pub(crate) digest: Option<String>,
 }
 
 /// The row of buttons, the link's panel and the notice.
@@ -41,6 +49,7 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
     let hands = use_hands();
     let notice = use_state_eq(|| Notice::at_opening(&props.opening));
     let panel = use_state_eq(|| false);
+    let list = use_state_eq(|| false);
     let say = {
         let notice = notice.setter();
         use_callback((), move |said: Notice, ()| notice.set(said))
@@ -58,10 +67,6 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
     use_links(&act, &say);
     use_drop(&act, &say);
     use_undo_keys(&act);
-    let toggle = {
-        let (set, open) = (panel.setter(), *panel);
-        Callback::from(move |_: MouseEvent| set.set(!open))
-    };
     let close = {
         let set = panel.setter();
         Callback::from(move |said: Option<Notice>| {
@@ -72,29 +77,51 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
             }
         })
     };
-    let save = save(&props.document);
-    let say_notice = notice.setter();
+    let save = save(&props.document, props.digest.clone());
+    let save_offered = save.clone();
+    let tell = {
+        let set = notice.setter();
+        Callback::from(move |said: Notice| set.set(said))
+    };
     html! {
         <div class="share">
             <div class="row" role="group" aria-label="The scenario">
                 <button
-                    type="button" id={COPY} data-testid="copy-link" onclick={toggle}
+                    type="button" id={COPY} data-testid="copy-link" onclick={toggle(&panel)}
                     aria-expanded={if *panel { "true" } else { "false" }}
                 >{ "Copy link" }</button>
                 <button type="button" data-testid="save-file" onclick={save.reform(|_| ())}>{ "Save file" }</button>
-                <OpenFile act={act.clone()} say={Callback::from(move |said| say_notice.set(said))} />
+                <OpenFile act={act.clone()} say={tell.clone()} />
+                <button
+                    type="button" data-testid="kept" onclick={toggle(&list)}
+                    aria-expanded={if *list { "true" } else { "false" }}
+                >{ "Kept" }</button>
                 { step("Undo", props.document.history.undo_words(), &act, || DocumentAction::Undo) }
                 { step("Redo", props.document.history.redo_words(), &act, || DocumentAction::Redo) }
             </div>
-            if *panel { <LinkPanel document={props.document.clone()} {save} {close} /> }
-            <NoticeView notice={(*notice).clone()} {act} hide={let set = notice.setter(); Callback::from(move |()| set.set(Notice::default()))} />
+            if *panel { <LinkPanel document={props.document.clone()} digest={props.digest.clone()} {save} {close} /> }
+            if *list {
+                <KeptPanel
+                    document={props.document.clone()} act={act.clone()}
+                    say={tell.clone()}
+                />
+            }
+            <NoticeView notice={(*notice).clone()} {act} save={save_offered} hide={tell.reform(|()| Notice::default())} />
         </div>
     }
 }
 
-fn save(document: &Document) -> Callback<()> {
+/// Opens and shuts a panel.
+fn toggle(panel: &UseStateHandle<bool>) -> Callback<MouseEvent> {
+    let (set, open) = (panel.setter(), **panel);
+    Callback::from(move |_: MouseEvent| set.set(!open))
+}
+
+fn save(document: &Document, digest: Option<String>) -> Callback<()> {
     let document = document.clone();
-    Callback::from(move |()| download(&file_name(&document.title), &document.file()))
+    Callback::from(move |()| {
+        download(&file_name(&document.title), &document.file_with(digest.as_ref()));
+    })
 }
 
 /// Undo or Redo; it keeps its place, and the focus, while there is nothing to do.

@@ -19,6 +19,7 @@ pub(crate) struct Notice {
     words: String,
     complaints: Vec<Complaint>,
     offers_demo: bool,
+    offers_file: bool,
 }
 
 impl Notice {
@@ -27,9 +28,14 @@ impl Notice {
         Self { words: words.into(), ..Self::default() }
     }
 
+    /// A sentence with the button that saves a file.
+    pub(crate) fn offering_a_file(words: impl Into<String>) -> Self {
+        Self { offers_file: true, ..Self::of(words) }
+    }
+
     /// Why something was not opened.
     pub(crate) fn refusal(refusal: Refusal) -> Self {
-        Self { words: refusal.words, complaints: refusal.complaints, offers_demo: false }
+        Self { words: refusal.words, complaints: refusal.complaints, ..Self::default() }
     }
 
     /// What was opened.
@@ -57,6 +63,7 @@ impl Notice {
 pub(crate) struct NoticeProps {
     pub(crate) notice: Notice,
     pub(crate) act: Callback<DocumentAction>,
+    pub(crate) save: Callback<()>,
     pub(crate) hide: Callback<()>,
 }
 
@@ -79,6 +86,9 @@ pub(crate) fn NoticeView(props: &NoticeProps) -> Html {
                     <span>{ notice.words.clone() }</span>
                     if notice.offers_demo {
                         <button type="button" data-testid="start-from-demo" onclick={start}>{ "Start from the demo instead" }</button>
+                    }
+                    if notice.offers_file {
+                        <button type="button" data-testid="save-offered" onclick={props.save.reform(|_| ())}>{ "Save file" }</button>
                     }
                     <button type="button" class="link" onclick={props.hide.reform(|_| ())}>{ "Hide" }</button>
                 </p>

@@ -139,7 +139,7 @@ mod tests {
         assert_eq!(acted.slots[0].rival.acts, [branch.clone(), stop.clone()]);
         assert!(acted.slots[1].rival.acts.is_empty());
         let undone = Rc::clone(&acted).reduce(DocumentAction::Undo);
-        assert_eq!(undone.slots[0].rival.acts, [branch.clone()]);
+        assert_eq!(undone.slots[0].rival.acts, std::slice::from_ref(&branch));
         let back = Rc::clone(&acted).reduce(DocumentAction::Steer(Steer::TakeBack(LaneId(1), 0)));
         assert_eq!(back.slots[0].rival.acts, [stop]);
         let on = Rc::clone(&acted).reduce(DocumentAction::Steer(Steer::GoOn(LaneId(1))));

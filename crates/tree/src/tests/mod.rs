@@ -1,8 +1,8 @@
 //! Tests of the whole search against enumeration and known trees.
 
 mod acts;
-mod conflict;
 mod by_hand;
+mod conflict;
 mod cycles;
 mod endings;
 mod enumeration;

@@ -1,6 +1,6 @@
 //! How the shipped rivals are drawn on the shipped scenarios: each by what its variables stand over.
 
-#![allow(clippy::unwrap_used, reason = "a test fails by it")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test fails by it")]
 
 use hullward_engine::Worker;
 use record::event::NodeNumber;

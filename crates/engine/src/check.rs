@@ -27,7 +27,9 @@ pub(crate) fn check(job: &CheckJob, readings: &mut Readings) -> CheckReport {
         && let Ok(reading) = readings.read(given)
         && let Some(instance) = &reading.instance
     {
-        match expand(&checked, instance, &given.bind) {
+        let (names, assumed) = notation::assumed(&job.text, &checked, instance, &given.bind);
+        found.extend(assumed);
+        match expand(&checked, instance, &names) {
             Ok(None) => {}
             Ok(Some((model, further))) => {
                 size = Some(size_of(&model));
@@ -151,9 +153,18 @@ mod tests {
 
     #[test]
     fn what_only_the_instance_shows_is_told_too() {
-        let report = checked(&ASSIGNMENT.replace("c_{i,j}", "w_{i,j}"), TABLE);
+        let weighted = ASSIGNMENT.replace("minutes\n", "minutes\n  q ≥ 0  weight\n");
+        let report = checked(&weighted.replace("c_{i,j} x", "q c_{i,j} x"), TABLE);
         assert!(!report.is_sound());
         assert!(report.remarks[0].complaint.code.starts_with("data."), "{:?}", report.remarks);
+    }
+
+    #[test]
+    fn a_table_under_another_name_is_taken_and_that_is_said() {
+        let report = checked(&ASSIGNMENT.replace("c_{i,j}", "w_{i,j}"), TABLE);
+        assert!(report.is_sound(), "{:?}", report.remarks);
+        let said = |remark: &Remark| remark.complaint.message.contains("w is taken from c");
+        assert!(report.remarks.iter().any(said), "{:?}", report.remarks);
     }
 
     #[test]

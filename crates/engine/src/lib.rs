@@ -12,6 +12,7 @@
 //! out is the same for every slice size; replies that would only repeat how far the work is are
 //! merged until they are taken.
 
+mod bindings;
 mod check;
 mod digest;
 mod fault;

@@ -72,7 +72,9 @@ impl Loading {
         if found.iter().any(Diagnostic::is_error) {
             return Err(not_a_model(&text, &found));
         }
-        let bound = notation::bind(&checked, instance, &given.bind)
+        let (names, assumed) = notation::assumed(&text, &checked, instance, &given.bind);
+        found.extend(assumed);
+        let bound = notation::bind(&checked, instance, &names)
             .map_err(|wrong| not_a_model(&text, &[found.clone(), wrong].concat()))?;
         let states = states(&job.rival);
         let expansion = Expansion::new(bound, &states, Limits::default());

@@ -251,7 +251,8 @@ impl Drive {
                 | Reply::Catalogue(_)
                 | Reply::Node(_)
                 | Reply::Checked(_)
-                | Reply::Written(_) => {}
+                | Reply::Written(_)
+                | Reply::Bound(_) => {}
             }
         }
     }

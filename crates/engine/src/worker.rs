@@ -5,6 +5,7 @@ use std::collections::VecDeque;
 use record::message::{Envelope, Reply, Request, RunNumber};
 use record::wire::{read_request, write_envelope};
 
+use crate::bindings::bindings;
 use crate::check::check;
 use crate::fault::fault;
 use crate::handover::handed_over;
@@ -91,6 +92,10 @@ impl Worker {
                 self.reply(Reply::Checked(Box::new(report)));
             }
             Request::Write(form, job) => self.reply(handed_over(form, *job)),
+            Request::Bind(job) => {
+                let bound = bindings(&job, &mut self.readings);
+                self.reply(Reply::Bound(bound));
+            }
             Request::List => self.reply(Reply::Catalogue(catalogue_entries())),
             Request::Load(job) => {
                 self.run = job.run;

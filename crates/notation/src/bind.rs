@@ -352,7 +352,7 @@ fn strip(node: &Node) -> &Node {
     }
 }
 
-fn noun(datum: &Datum) -> &'static str {
+pub(crate) fn noun(datum: &Datum) -> &'static str {
     match datum {
         Datum::Labels(_) => "a set of labels",
         Datum::Integers(_) => "a set of whole numbers",

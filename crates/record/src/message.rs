@@ -26,6 +26,8 @@ pub enum Request {
     Check(Box<CheckJob>),
     /// Hand a rival over to others, all at once. Answered by [`Reply::Written`].
     Write(Form, Box<LaneJob>),
+    /// Say which data each rival takes from an instance. Answered by [`Reply::Bound`].
+    Bind(Box<BindJob>),
     /// Load a rival and solve its root. Answered by [`Reply::Understood`] and [`Reply::Root`].
     Load(Box<LaneJob>),
     /// Search on: to the end, or for a number of nodes. Answered by [`Reply::Batch`]es.
@@ -61,6 +63,57 @@ pub struct LaneJob {
     pub settings: Run,
     /// The scenario's seed.
     pub seed: u64,
+}
+
+/// Rivals whose data are to be found in an instance.
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
+pub struct BindJob {
+    /// The instance, with the names that a person gave.
+    pub instance: InstanceText,
+    /// The rivals in order.
+    pub rivals: Vec<Rival>,
+}
+
+/// What the rivals take from the instance under one name of theirs.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Binding {
+    /// The rivals' name.
+    pub name: String,
+    /// What the first of them says of it; may be empty.
+    pub meaning: String,
+    /// The instance's name; none where nothing was found.
+    pub taken: Option<String>,
+    /// How it was found.
+    pub found: FoundBy,
+    /// What is wrong, with its place: "line 4 of A: …"; empty where it is well.
+    pub problem: String,
+    /// What the instance holds, what fits first.
+    pub offers: Vec<BindingOffer>,
+}
+
+/// How a datum was found.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub enum FoundBy {
+    /// By its own name.
+    #[default]
+    Name,
+    /// Under the name that a person gave.
+    Person,
+    /// By its shape, labels and wording.
+    Shape,
+    /// Not at all.
+    Nothing,
+}
+
+/// A datum of the instance.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct BindingOffer {
+    /// Its name.
+    pub name: String,
+    /// What it is: "a table".
+    pub what: String,
+    /// Whether it fits every rival that takes it.
+    pub fits: bool,
 }
 
 /// A formulation to check.
@@ -101,6 +154,8 @@ pub enum Reply {
     Checked(Box<CheckReport>),
     /// A rival handed over.
     Written(Box<Written>),
+    /// Which data the rivals take from the instance, by their names.
+    Bound(Vec<Binding>),
     /// A rival was parsed, checked and expanded.
     Understood(Box<RivalReport>),
     /// Long work on one thing goes on.

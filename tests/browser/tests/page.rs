@@ -15,6 +15,9 @@ mod solving;
 #[path = "page/nodes.rs"]
 mod nodes;
 
+#[path = "page/data.rs"]
+mod data;
+
 #[path = "page/drawings.rs"]
 mod drawings;
 

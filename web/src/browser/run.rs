@@ -187,6 +187,7 @@ impl LaneRun {
             Reply::Relaxation(Err(why)) => Some(LaneAction::Second(Opinion::Silent(why))),
             Reply::Checked(_)
             | Reply::Relaxation(Ok(_))
+            | Reply::Bound(_)
             | Reply::Node(_)
             | Reply::Written(_)
             | Reply::Ready { .. }

@@ -14,7 +14,7 @@ use std::rc::{Rc, Weak};
 use gloo_timers::callback::Timeout;
 use record::event::NodeNumber;
 use record::message::{
-    CheckJob, CheckReport, Complaint, Envelope, InstanceReport, LaneJob, Reply, Request,
+    BindJob, CheckJob, CheckReport, Complaint, Envelope, InstanceReport, LaneJob, Reply, Request,
 };
 use record::opinion::Opinion;
 use record::results::ErrorReport;
@@ -102,6 +102,14 @@ impl Session {
         }
     }
 
+    /// Asks which data the rivals take from an instance; the document hears of it.
+    pub(crate) fn bind(&self, job: BindJob) {
+        if let Some(author) = &self.0.borrow().author {
+            // A worker that takes no message tells so by its error event.
+            let _ = author.post(&Request::Bind(Box::new(job)));
+        }
+    }
+
     /// Loads a rival into a lane and solves its root; what ran there is given up, unless it is
     /// just this. A lane in which only acts by hand are others is led to where it was.
     pub(crate) fn load(&self, id: LaneId, job: LaneJob) {
@@ -111,6 +119,11 @@ impl Session {
             return;
         }
         self.tell(id, LaneAction::Notice(String::new()));
+        let left = self.0.borrow().lanes.get(&id).map(|lane| Box::new(lane.job.clone()));
+        if let Some(left) = left {
+            let board = self.0.borrow().board.clone();
+            board.dispatch(BoardAction::Leave(id, left));
+        }
         let action = {
             let mut inner = self.0.borrow_mut();
             inner.opinions.give_up(id);
@@ -369,6 +382,10 @@ impl Session {
             FromWorker::Reply(Envelope { reply: Reply::Catalogue(entries), .. }) => {
                 let document = self.0.borrow().document.clone();
                 document.dispatch(DocumentAction::Catalogue(entries));
+            }
+            FromWorker::Reply(Envelope { reply: Reply::Bound(bindings), .. }) => {
+                let document = self.0.borrow().document.clone();
+                document.dispatch(DocumentAction::Bound(bindings));
             }
             FromWorker::Reply(Envelope { reply: Reply::Checked(report), .. }) => {
                 let heard = self.0.borrow_mut().checks.end(report.number);

@@ -4,12 +4,13 @@ use std::collections::BTreeMap;
 use std::rc::Rc;
 
 use record::event::NodeNumber;
-use record::message::{NodeDetail, Progress, RivalReport};
+use record::message::{LaneJob, NodeDetail, Progress, RivalReport};
 use record::opinion::Opinion;
 use record::results::{ConflictReport, ErrorReport, RootReport, SearchReport, Status};
 use yew::Reducible;
 
 use crate::state::lane::{Lane, LaneId, Phase};
+use crate::state::outcomes::{Kept, Outcome};
 use crate::state::pointer::Shared;
 use crate::state::tree::Tally;
 
@@ -36,6 +37,10 @@ pub(crate) struct Board {
     chosen: bool,
     /// The selected node in full, once its worker has answered.
     pub(crate) detail: Option<Shared<NodeDetail>>,
+    /// Results on instances that are not chosen.
+    pub(crate) kept: Shared<Vec<Kept>>,
+    /// Whether instances that are not chosen are being run.
+    pub(crate) elsewhere: bool,
 }
 
 /// What happens to lanes.
@@ -49,6 +54,12 @@ pub(crate) enum BoardAction {
     Select(Selection),
     /// A node in full.
     Detail(LaneId, NodeDetail),
+    /// A lane leaves its instance: what it found there is kept.
+    Leave(LaneId, Box<LaneJob>),
+    /// A result on an instance that is not chosen.
+    Keep(Box<Kept>),
+    /// Running instances that are not chosen begins or ends.
+    Elsewhere(bool),
 }
 
 /// What happens in a lane.
@@ -95,6 +106,12 @@ impl Reducible for Board {
                 board.select(selection);
                 board.chosen = true;
             }
+            BoardAction::Leave(id, job) => {
+                let Some(outcome) = Outcome::of(&board.lane(id)) else { return self };
+                board.keep(Kept::new(*job, outcome));
+            }
+            BoardAction::Keep(kept) => board.keep(*kept),
+            BoardAction::Elsewhere(running) => board.elsewhere = running,
             BoardAction::Detail(id, detail) => {
                 if board.selection != Some(Selection { lane: id, node: detail.node }) {
                     return self;

@@ -1,17 +1,19 @@
 //! The scenario as it is edited: the instance's text, what was read of it, and the rivals.
 
+use std::collections::BTreeMap;
 use std::rc::Rc;
 
 use crate::demo::demo;
 use crate::state::arrange::Arrange;
 use crate::state::editor::Edit;
 use crate::state::history::History;
+use crate::state::instances::InstanceEdit;
 use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
 use crate::state::same::Made;
 use crate::state::steer::Steer;
 use record::file::{looks_like_a_scenario, parse};
-use record::message::{CatalogueEntry, InstanceReport};
+use record::message::{Binding, CatalogueEntry, InstanceReport};
 use record::scenario::{FamilyState, InstanceText, Rival, Role, Run, Scenario, letter};
 
 /// The readers, as the scenario file names them, with a word for people.
@@ -67,6 +69,14 @@ pub(crate) struct Document {
     pub(crate) reading: Option<Shared<InstanceReport>>,
     /// The last text that could be used, which the rivals run on.
     pub(crate) accepted: Option<Accepted>,
+    /// The other instances in order; the one in the box stands before that at `chosen`.
+    pub(crate) others: Vec<Shared<InstanceText>>,
+    /// The place of the instance in the box among all.
+    pub(crate) chosen: usize,
+    /// What the rivals take from the instance, by their names.
+    pub(crate) bindings: Shared<Vec<Binding>>,
+    /// Lanes that a change of names did not touch, with the text that they still run on.
+    pub(crate) held: BTreeMap<LaneId, Shared<InstanceText>>,
     /// The rivals in order.
     pub(crate) slots: Vec<Slot>,
     /// The shipped formulations.
@@ -99,6 +109,12 @@ pub(crate) enum DocumentAction {
     Reader(Option<String>),
     /// A text was read.
     Read(Shared<InstanceText>, InstanceReport),
+    /// It is known what the rivals take from the instance.
+    Bound(Vec<Binding>),
+    /// A name of the rivals takes another datum of the instance; `None` leaves it to be found.
+    Bind(String, Option<String>),
+    /// An instance joins, leaves, is chosen or named.
+    Instances(InstanceEdit),
     /// The catalogue came.
     Catalogue(Vec<CatalogueEntry>),
     /// A rival from the catalogue joins.
@@ -124,6 +140,7 @@ impl Document {
     /// The document of a scenario whose lanes are numbered from `next`.
     fn numbered(mut scenario: Scenario, next: u32) -> Self {
         let rivals = std::mem::take(&mut scenario.rivals);
+        let others = std::mem::take(&mut scenario.further_instances);
         let mut document = Self {
             titled: false,
             title: std::mem::take(&mut scenario.title),
@@ -133,6 +150,10 @@ impl Document {
             draft: Shared::new(scenario.instance.take().unwrap_or_default()),
             reading: None,
             accepted: None,
+            others: others.into_iter().map(Shared::new).collect(),
+            chosen: 0,
+            bindings: Shared::new(Vec::new()),
+            held: BTreeMap::new(),
             slots: Vec::new(),
             catalogue: Shared::new(Vec::new()),
             rest: Shared::new(scenario),
@@ -181,7 +202,7 @@ impl Document {
         self.entry(rival).map_or_else(String::new, |entry| bracketed(&entry.title).1.to_owned())
     }
 
-    fn entry(&self, rival: &Rival) -> Option<&CatalogueEntry> {
+    pub(crate) fn entry(&self, rival: &Rival) -> Option<&CatalogueEntry> {
         self.catalogue.iter().find(|entry| rival.from.as_ref() == Some(&entry.id))
     }
 
@@ -200,7 +221,7 @@ impl Document {
     }
 
     /// Another text in the box; what was read of the old one does not hold for it.
-    fn draft(&mut self, draft: InstanceText) {
+    pub(crate) fn draft(&mut self, draft: InstanceText) {
         self.draft = Shared::new(draft);
         self.reading = None;
     }
@@ -213,15 +234,19 @@ impl Document {
         }
         let before = self.accepted.as_ref().map(|accepted| accepted.text.clone());
         let another = before.as_ref().is_some_and(|before| *before != text);
-        if before.is_some_and(|before| is_another(&before.text, &text.text))
+        if another {
+            self.held.clear();
+        }
+        let alone = self.others.is_empty();
+        if before.is_some_and(|before| alone && is_another(&before.text, &text.text))
             && *self.notes == demo().notes
         {
             self.notes = Shared::new(String::new());
         }
-        if another {
+        if another && alone {
             self.forget_acts();
         }
-        if another && !self.titled {
+        if another && alone && !self.titled {
             self.title =
                 if report.title.is_empty() { UNTITLED.to_owned() } else { report.title.clone() };
         }
@@ -281,7 +306,14 @@ impl Document {
                     .reader
                     .clone()
                     .filter(|_| !is_another(&document.draft.text, &text));
-                document.draft(InstanceText { reader, text, ..InstanceText::default() });
+                let title = document.draft.title.clone();
+                let title = if document.others.is_empty() { String::new() } else { title };
+                let bind = if is_another(&document.draft.text, &text) {
+                    BTreeMap::new()
+                } else {
+                    document.draft.bind.clone()
+                };
+                document.draft(InstanceText { reader, title, text, bind });
             }
             DocumentAction::Reader(reader) => {
                 document.draft(InstanceText { reader, ..(*document.draft).clone() });
@@ -296,6 +328,9 @@ impl Document {
                 document.catalogue = Shared::new(entries);
                 document.recognise();
             }
+            DocumentAction::Bound(bindings) => document.bindings = Shared::new(bindings),
+            DocumentAction::Bind(name, taken) => document.bind(name, taken),
+            DocumentAction::Instances(edit) => document.edit_instances(edit),
             DocumentAction::Add(id) => {
                 document.push(Rival { from: Some(id), ..Rival::default() });
             }
@@ -305,6 +340,7 @@ impl Document {
             DocumentAction::Arrange(arrange) => document.arrange(arrange),
             DocumentAction::Steer(steer) => document.steer(steer),
         }
+        document.release_changed(&self);
         document.into()
     }
 }

@@ -8,6 +8,7 @@ use std::rc::Rc;
 use yew::Reducible;
 
 use crate::state::document::{Document, DocumentAction, is_another};
+use crate::state::instances::InstanceEdit;
 use crate::state::pointer::Shared;
 
 /// Steps that can be undone.
@@ -83,11 +84,15 @@ fn change(document: &Document, action: &DocumentAction) -> Option<Change> {
         DocumentAction::Remove(_) => done("rival that left"),
         DocumentAction::Family(..) => done("state of a family"),
         DocumentAction::Open(_) => done("scenario that was opened"),
+        DocumentAction::Bind(..) => done("choice of data"),
+        DocumentAction::Instances(edit @ InstanceEdit::Rename(_)) => typed(edit.words()),
+        DocumentAction::Instances(edit) => done(edit.words()),
         DocumentAction::Edit(edit) => done(edit.words()),
         DocumentAction::Arrange(arrange) => done(arrange.words()),
         DocumentAction::Steer(steer) => done(steer.words()),
         DocumentAction::Read(..)
         | DocumentAction::Catalogue(_)
+        | DocumentAction::Bound(_)
         | DocumentAction::Undo
         | DocumentAction::Redo => None,
     }

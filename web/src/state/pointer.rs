@@ -15,6 +15,12 @@ impl<T> Shared<T> {
     }
 }
 
+impl<T: Default> Default for Shared<T> {
+    fn default() -> Self {
+        Self::new(T::default())
+    }
+}
+
 impl<T> Clone for Shared<T> {
     fn clone(&self) -> Self {
         Self(Rc::clone(&self.0))

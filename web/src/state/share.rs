@@ -19,6 +19,8 @@ pub(crate) struct Edited {
     seed: u64,
     run: Shared<Run>,
     draft: Shared<InstanceText>,
+    others: Vec<Shared<InstanceText>>,
+    chosen: usize,
     slots: Vec<Slot>,
     rest: Shared<Scenario>,
 }
@@ -32,6 +34,8 @@ impl Document {
             seed: self.seed,
             run: self.run.clone(),
             draft: self.draft.clone(),
+            others: self.others.clone(),
+            chosen: self.chosen,
             slots: self.slots.clone(),
             rest: self.rest.clone(),
         }
@@ -40,13 +44,15 @@ impl Document {
     /// The scenario as it stands. Results of another engine do not hold for it any more, so it
     /// carries neither their digest nor that engine's version.
     pub(crate) fn scenario(&self) -> Scenario {
-        let empty = *self.draft == InstanceText::default();
+        let empty = self.others.is_empty() && *self.draft == InstanceText::default();
+        let mut instances = self.instances().into_iter().map(|text| (*text).clone());
+        let instance = instances.next().filter(|_| !empty);
         Scenario {
             title: self.title.clone(),
             seed: self.seed,
             notes: (*self.notes).clone(),
-            instance: (!empty).then(|| (*self.draft).clone()),
-            further_instances: self.rest.further_instances.clone(),
+            instance,
+            further_instances: instances.collect(),
             rivals: self.slots.iter().map(|slot| (*slot.rival).clone()).collect(),
             run: (*self.run).clone(),
             studies: self.rest.studies.clone(),

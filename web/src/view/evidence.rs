@@ -8,6 +8,7 @@ use crate::state::document::{Document, Slot};
 use crate::view::figure::{figure, gap, share};
 use crate::view::inspector::InspectorProps as EvidenceProps;
 use crate::view::lane::is_over;
+use crate::view::results::Results;
 use crate::view::rivals::HUES;
 
 /// The section.
@@ -32,6 +33,7 @@ pub(crate) fn Evidence(props: &EvidenceProps) -> Html {
                     </tbody>
                 </table>
             </div>
+            <Results document={document.clone()} board={board.clone()} />
             <p class="prose">
                 { "Gap is |incumbent − bound| / |incumbent|, with the best value known on this page as incumbent. \
                    A bound is shown as checked only where exact arithmetic has confirmed it. \

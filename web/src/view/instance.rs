@@ -5,9 +5,11 @@ use yew::prelude::*;
 
 use crate::state::document::{Document, DocumentAction, broken_scenario};
 use crate::state::pointer::Shared;
+use crate::view::bindings::Bindings;
 use crate::view::complaints::Complaints;
 use crate::view::grid::Grid;
 use crate::view::hands::use_hands;
+use crate::view::instances::Instances;
 use crate::view::map::Map;
 use crate::view::paste::Paste;
 
@@ -40,6 +42,7 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
     html! {
         <section class="instance" aria-labelledby="instance-heading">
             <h2 id="instance-heading">{ "Instance" }</h2>
+            <Instances document={document.clone()} />
             <div class={classes!("instance-parts", (!is_drawn(document)).then_some("plain"))}>
                 if is_drawn(document) { <Drawing document={document.clone()} /> }
                 <div>
@@ -47,6 +50,7 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
                     if let Some(report) = &document.reading {
                         <Complaints text={document.draft.clone()} report={report.clone()} />
                     }
+                    <Bindings document={document.clone()} />
                     <Paste draft={document.draft.clone()} broken={is_broken(document)} />
                 </div>
             </div>

@@ -60,7 +60,7 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
                     source={document.rival_source(&slot.rival)} relaxation={document.is_relaxation(&slot.rival)}
                     draft={Draft::of(&slot.rival, &document.catalogue)}
                     lane={board.lane(slot.id)} run={document.run.clone()} seed={document.seed}
-                    text={document.accepted.as_ref().map(|accepted| accepted.text.clone())}
+                    text={document.instance_of(slot)}
                     {axis} {width} best={best.as_ref().map(|best| best.value)}
                     selected={board.selection.filter(|at| at.lane == slot.id).map(|at| at.node)}
                 />

@@ -43,6 +43,15 @@ pub(crate) fn assumed(name: &str, what: &str, span: Span) -> Diagnostic {
     )
 }
 
+pub(crate) fn matched(name: &str, taken: &str, span: Span) -> Diagnostic {
+    let message = format!(
+        "{} is taken from {}, which suits it; the instance has no {0}",
+        short(name),
+        short(taken)
+    );
+    Diagnostic::info("data.matched", span, message)
+}
+
 pub(crate) fn out_of_range(what: &str, span: Span) -> Diagnostic {
     Diagnostic::warning("data.range", span, format!("{what} breaks the condition on its line"))
 }

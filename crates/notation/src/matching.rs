@@ -1,0 +1,300 @@
+//! Which datum of an instance each `data` line of a formulation takes: the one of the same name,
+//! the one that a person named, or, where there is neither, the only one that suits by shape,
+//! labels and wording. What is assumed so is said.
+
+use std::collections::{BTreeMap, BTreeSet};
+
+use instance::{Datum, Instance};
+
+use crate::bind::noun;
+use crate::check::Checked;
+use crate::diagnostic::{Diagnostic, data as message};
+use crate::plan::{Root, Shape, Symbol, SymbolId};
+
+/// How a datum was found.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Found {
+    /// By its own name.
+    Named,
+    /// Under the name that a person gave.
+    Given,
+    /// By shape, labels and wording.
+    Assumed,
+    /// Not at all; the formulation has a default.
+    Default,
+    /// Not at all.
+    Nothing,
+}
+
+/// A datum of the instance that could be taken.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Offer {
+    /// Its name.
+    pub name: String,
+    /// What it is.
+    pub what: &'static str,
+    /// Whether it has the shape that is wanted.
+    pub fits: bool,
+}
+
+/// What one `data` line takes.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct Match {
+    /// The formulation's name.
+    pub name: String,
+    /// The byte of the text at which its line names it.
+    pub at: usize,
+    /// What its line says of it; may be empty.
+    pub meaning: String,
+    /// The instance's name.
+    pub taken: Option<String>,
+    /// How it was found.
+    pub found: Found,
+    /// Everything that the instance holds, what fits first.
+    pub offers: Vec<Offer>,
+}
+
+impl Match {
+    /// Whether what is taken is there and has the right shape, or nothing need be taken.
+    #[must_use]
+    pub fn is_well(&self) -> bool {
+        match &self.taken {
+            Some(taken) => self.offers.iter().any(|offer| offer.name == *taken && offer.fits),
+            None => self.found == Found::Default,
+        }
+    }
+}
+
+/// What each `data` line of a checked formulation takes from an instance, in order. `names`
+/// holds what a person named, by the formulation's names. `O(lines · data · cells)`.
+#[must_use]
+pub fn matches(
+    text: &str,
+    checked: &Checked,
+    instance: &Instance,
+    names: &BTreeMap<String, String>,
+) -> Vec<Match> {
+    let symbols = &checked.plan.symbols;
+    let lines: Vec<SymbolId> = (0..symbols.len()).filter(|&id| symbols[id].datum).collect();
+    let mut matcher = Matcher { text, symbols, instance, taken: BTreeMap::new() };
+    for &id in &lines {
+        let name = &symbols[id].name;
+        if let Some(given) = names.get(name) {
+            matcher.taken.insert(id, (given.clone(), Found::Given));
+        } else if instance.get(name).is_some() {
+            matcher.taken.insert(id, (name.clone(), Found::Named));
+        }
+    }
+    // tables first: their labels tell the sets apart
+    for tables in [true, false] {
+        for &id in &lines {
+            if symbols[id].used && symbols[id].indices.is_empty() != tables {
+                matcher.assume(id);
+            }
+        }
+    }
+    lines.into_iter().map(|id| matcher.line(id)).collect()
+}
+
+/// The names to bind by: those given, and those assumed; and what is to be said of the latter.
+#[must_use]
+pub fn assumed(
+    text: &str,
+    checked: &Checked,
+    instance: &Instance,
+    names: &BTreeMap<String, String>,
+) -> (BTreeMap<String, String>, Vec<Diagnostic>) {
+    let mut all = names.clone();
+    let mut notes = Vec::new();
+    for line in matches(text, checked, instance, names) {
+        if let (Found::Assumed, Some(taken)) = (line.found, line.taken) {
+            let symbol = checked.plan.symbols.iter().find(|symbol| symbol.name == line.name);
+            notes.extend(symbol.map(|symbol| message::matched(&line.name, &taken, symbol.span)));
+            all.insert(line.name, taken);
+        }
+    }
+    (all, notes)
+}
+
+struct Matcher<'m> {
+    text: &'m str,
+    symbols: &'m [Symbol],
+    instance: &'m Instance,
+    taken: BTreeMap<SymbolId, (String, Found)>,
+}
+
+impl Matcher<'_> {
+    /// Takes the only datum that suits a line best, unless the line has one or a default.
+    fn assume(&mut self, id: SymbolId) {
+        let symbol = &self.symbols[id];
+        if self.taken.contains_key(&id) || symbol.value.is_some() {
+            return;
+        }
+        let used: BTreeSet<&str> = self.taken.values().map(|(name, _)| name.as_str()).collect();
+        let free = self
+            .instance
+            .data()
+            .filter(|(name, _)| !used.contains(name) && !self.instance.assumed.contains(*name));
+        let wording = words(&format!("{} {}", symbol.name, meaning(self.text, symbol)));
+        let suits = free.filter(|(_, datum)| fits(symbol, datum) && self.holds_labels(id, datum));
+        let scored: Vec<(usize, &str)> =
+            suits.map(|(name, _)| (shared(&wording, &words(name)), name)).collect();
+        let Some(best) = scored.iter().map(|(score, _)| *score).max() else { return };
+        let mut leading = scored.iter().filter(|(score, _)| *score == best);
+        if let (Some((_, name)), None) = (leading.next(), leading.next()) {
+            self.taken.insert(id, ((*name).to_owned(), Found::Assumed));
+        }
+    }
+
+    /// Whether a set holds the labels of every table that is indexed by it.
+    fn holds_labels(&self, id: SymbolId, datum: &Datum) -> bool {
+        let members: BTreeSet<String> = match datum {
+            Datum::Labels(labels) => labels.iter().cloned().collect(),
+            Datum::Integers(values) => values.iter().map(ToString::to_string).collect(),
+            _ => return true,
+        };
+        self.taken.iter().all(|(&other, (name, _))| {
+            let Some(Datum::Table { cells, .. }) = self.instance.get(name) else { return true };
+            let roots = self.symbols[other].roots.iter().enumerate();
+            let mut places = roots.filter(|(_, root)| **root == Root::Set(id));
+            places.all(|(place, _)| {
+                cells.keys().all(|key| key.get(place).is_none_or(|label| members.contains(label)))
+            })
+        })
+    }
+
+    fn line(&self, id: SymbolId) -> Match {
+        let symbol = &self.symbols[id];
+        let nothing =
+            if symbol.value.is_some() || !symbol.used { Found::Default } else { Found::Nothing };
+        let taken = self.taken.get(&id);
+        let mut offers: Vec<Offer> = self
+            .instance
+            .data()
+            .map(|(name, datum)| Offer {
+                name: name.to_owned(),
+                what: noun(datum),
+                fits: fits(symbol, datum),
+            })
+            .collect();
+        offers.sort_by_key(|offer| !offer.fits);
+        Match {
+            name: symbol.name.clone(),
+            at: symbol.span.range().start,
+            meaning: meaning(self.text, symbol),
+            taken: taken.map(|(name, _)| name.clone()),
+            found: taken.map_or(nothing, |(_, found)| *found),
+            offers,
+        }
+    }
+}
+
+/// Whether a datum has the shape that a line wants.
+fn fits(symbol: &Symbol, datum: &Datum) -> bool {
+    let places = symbol.indices.len();
+    match (&symbol.shape, datum) {
+        (Shape::Number, Datum::Number(_)) => places == 0,
+        (Shape::Element(_), Datum::Element(_)) => places == 0,
+        (Shape::Set(roots), Datum::Labels(_) | Datum::Integers(_)) => {
+            places == 0 && roots.len() == 1
+        }
+        (Shape::Number | Shape::Element(_), Datum::Table { arity, .. }) => {
+            places > 0 && *arity == places
+        }
+        (Shape::Element(_), Datum::Tuples { arity, .. }) => places > 0 && *arity == places + 1,
+        (Shape::Set(roots), Datum::Tuples { arity, .. }) => *arity == places + roots.len(),
+        (Shape::Set(roots), Datum::Table { arity, .. }) => {
+            places == 0 && roots.len() > 1 && *arity == roots.len()
+        }
+        _ => false,
+    }
+}
+
+/// What the line of a datum says of it: what stands behind two blanks or more at its end.
+fn meaning(text: &str, symbol: &Symbol) -> String {
+    let at = symbol.span.range().start;
+    let rest = text.get(at..).and_then(|rest| rest.lines().next()).unwrap_or("").trim_end();
+    rest.rsplit_once("  ").map_or("", |(_, words)| words.trim()).to_owned()
+}
+
+/// Words of three letters or more, in small letters and without an s at the end.
+fn words(text: &str) -> BTreeSet<String> {
+    let words = text.split(|c: char| !c.is_alphanumeric()).map(str::to_lowercase);
+    let words = words.map(|word| word.strip_suffix('s').map_or(word.clone(), str::to_owned));
+    words.filter(|word| word.chars().count() > 2).collect()
+}
+
+/// How many words two texts share.
+fn shared(one: &BTreeSet<String>, other: &BTreeSet<String>) -> usize {
+    one.intersection(other).count()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    const SPLIT: &str = "Split links\n\ndata\n  I                     facilities\n  J                     clients\n  \
+        f_i  ∀ i ∈ I          cost of opening a facility\n  c_{i,j}  ∀ i ∈ I, j ∈ J   cost of serving a client\n\
+        minimise\n  Σ_{i ∈ I} f_i y_i + Σ_{i ∈ I} Σ_{j ∈ J} c_{i,j} x_{i,j}\nsubject to\n  \
+        Σ_{i ∈ I} x_{i,j} = 1  ∀ j ∈ J  (serve)\n  x_{i,j} ≤ y_i  ∀ i ∈ I, j ∈ J  (link)\n  \
+        x_{i,j} ≥ 0  ∀ i ∈ I, j ∈ J\n  y_i ∈ {0,1}  ∀ i ∈ I\n";
+
+    const TABLES: &str = "depot\topening\nAshford\t62\nBirchley\t55\n\ndepot\tvillage\thaul\n\
+        Ashford\tAbbey\t31\nAshford\tBarrow\t24\nBirchley\tAbbey\t92\nBirchley\tBarrow\t21\n";
+
+    fn matched(text: &str, table: &str, names: &[(&str, &str)]) -> Vec<Match> {
+        let checked = crate::check(&crate::parse(text).tree).0;
+        let reading = instance::read(table, None);
+        let instance = reading.instance.unwrap_or_else(|| panic!("{:?}", reading.complaints));
+        let own = |&(name, of): &(&str, &str)| (name.to_owned(), of.to_owned());
+        matches(text, &checked, &instance, &names.iter().map(own).collect())
+    }
+
+    fn taken(lines: &[Match]) -> Vec<(&str, Option<&str>, Found)> {
+        lines.iter().map(|l| (l.name.as_str(), l.taken.as_deref(), l.found)).collect()
+    }
+
+    #[test]
+    fn foreign_headings_are_matched_by_shape_and_labels() {
+        let lines = matched(SPLIT, TABLES, &[]);
+        let all = [("I", "depot"), ("J", "village"), ("f", "opening"), ("c", "haul")];
+        let all = all.map(|(name, of)| (name, Some(of), Found::Assumed));
+        assert_eq!(taken(&lines), all);
+        assert!(lines.iter().all(Match::is_well));
+        assert_eq!(lines[3].meaning, "cost of serving a client");
+        assert_eq!(lines[3].offers[0].name, "haul", "what fits comes first");
+    }
+
+    #[test]
+    fn wording_decides_between_equal_shapes_and_nothing_is_guessed() {
+        let two = TABLES.replace(
+            "depot\topening\nAshford\t62\nBirchley\t55",
+            "depot\topening\trent\nAshford\t62\t1\nBirchley\t55\t2",
+        );
+        let lines = matched(SPLIT, &two, &[]);
+        assert_eq!(lines[2].taken.as_deref(), Some("opening"), "{lines:?}");
+        let lines = matched(SPLIT, &two.replace("opening", "permit"), &[]);
+        assert_eq!((lines[2].taken.as_deref(), lines[2].found), (None, Found::Nothing));
+        assert!(!lines[2].is_well());
+    }
+
+    #[test]
+    fn what_a_person_names_stands_even_where_it_does_not_fit() {
+        let lines = matched(SPLIT, TABLES, &[("f", "haul"), ("c", "nowhere")]);
+        assert_eq!(lines[2].found, Found::Given);
+        assert!(!lines[2].is_well() && !lines[3].is_well());
+        let lines = matched(SPLIT, TABLES, &[("f", "opening")]);
+        assert!(lines[2].is_well() && lines[2].found == Found::Given);
+    }
+
+    #[test]
+    fn names_of_their_own_are_taken_as_they_are() {
+        let own = TABLES
+            .replace("depot", "I")
+            .replace("village", "J")
+            .replace("opening", "f")
+            .replace("haul", "c");
+        let lines = matched(SPLIT, &own, &[]);
+        assert!(lines.iter().all(|line| line.found == Found::Named), "{lines:?}");
+    }
+}

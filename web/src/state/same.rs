@@ -162,9 +162,14 @@ mod tests {
         Found(bounds.iter().map(lane).collect())
     }
 
+    /// A rival that a file may hold without an instance.
+    fn rival() -> Rival {
+        Rival { mps: Some("NAME\n".to_owned()), ..Rival::default() }
+    }
+
     fn opened(digest: Option<String>, engine: &str) -> Document {
         Document::open(Scenario {
-            rivals: vec![Rival::default(), Rival::default()],
+            rivals: vec![rival(), rival()],
             engine: digest.as_ref().map(|_| engine.to_owned()),
             digest,
             ..Scenario::default()

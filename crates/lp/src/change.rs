@@ -79,7 +79,7 @@ impl Core {
         self.balance(&mut repair);
         self.head.clear();
         self.sort_head();
-        let replaced = self.refactor_canonical();
+        let replaced = self.refactor_first();
         repair.dropped += replaced;
         repair.inserted += replaced;
         repair

@@ -42,7 +42,19 @@ impl Core {
         if let Some(j) = (0..variables).find(|&j| !fits(j)) {
             return Err(format!("variable {j} stands at a bound it does not have"));
         }
+        self.check_violated()?;
         self.check_matrix()
+    }
+
+    /// The list of violated positions has each at most once.
+    fn check_violated(&self) -> Result<(), String> {
+        let listed = self.is_listed.iter().filter(|listed| **listed).count();
+        let marked = self.violated.iter().all(|&position| self.is_listed[position as usize]);
+        if listed == self.violated.len() && marked {
+            Ok(())
+        } else {
+            Err("the list of violated positions and its marks disagree".to_owned())
+        }
     }
 
     /// The copy by column holds the entries of the copy by row, in order.

@@ -24,7 +24,7 @@ impl Simplex {
         self.machine.forget();
         let core = &mut self.core;
         core.restore_given();
-        core.refactor_canonical();
+        core.refactor_first();
         Checkpoint {
             columns: core.columns(),
             rows: core.rows(),

@@ -21,7 +21,7 @@ impl Simplex {
         if self.machine.is_working() {
             return None;
         }
-        self.core.refactor_canonical();
+        self.core.refactor_first();
         Some(self.core.condition_estimate())
     }
 }

@@ -187,7 +187,7 @@ impl Simplex {
     /// factors and the nonzeros.
     pub fn dual_bound(&mut self) -> Option<f64> {
         if !self.machine.is_working() {
-            self.core.refactor_canonical();
+            self.core.refactor_first();
         }
         let duals = self.core.given_duals();
         self.core.dual_bound(&duals)

@@ -260,6 +260,13 @@ impl Core {
         replaced
     }
 
+    /// Factors as a first attempt sees them, whatever the last solve went through. Returns how many
+    /// columns were replaced.
+    pub(crate) fn refactor_first(&mut self) -> u32 {
+        self.care = ATTEMPTS[0];
+        self.refactor_canonical()
+    }
+
     /// The value of a nonbasic variable (working bounds).
     pub(crate) fn nonbasic_value(&self, j: usize) -> f64 {
         match self.status[j] {

@@ -28,16 +28,18 @@ impl Simplex {
         if self.machine.is_working() || column.0 as usize >= self.core.columns() {
             return None;
         }
-        self.core.refactor_canonical();
+        self.core.refactor_first();
         let position = self.core.head.binary_search(&column.0).ok()?;
         Some(self.core.tableau_row(position as u32))
     }
 }
 
 impl Core {
-    /// The row at a position; factors are canonical.
+    /// The row at a position, refined; factors are canonical.
     fn tableau_row(&mut self, position: u32) -> TableauRow {
+        self.care.refines = true;
         self.compute_row(position);
+        self.care.refines = false;
         let n = self.columns();
         let unit = self.unit[self.head[position as usize] as usize];
         let mut multipliers: Vec<(RowId, f64)> = self

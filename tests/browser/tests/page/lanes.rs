@@ -48,7 +48,7 @@ pub(crate) async fn paste(browser: &Browser, text: &str) -> Outcome<()> {
 /// Adds a rival from the catalogue.
 pub(crate) async fn add(browser: &Browser, id: &str) -> Outcome<()> {
     browser.select("[data-testid=catalogue]").await?.select_by_value(id).await?;
-    Ok(browser.find("button", "Add").await?.click().await?)
+    Ok(browser.select("[data-testid=add]").await?.click().await?)
 }
 
 /// Pastes a round of so many scattered stops that its labels are searched for long, and waits for

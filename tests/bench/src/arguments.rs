@@ -3,7 +3,6 @@
 use crate::problems::{NAMES, Named, named};
 use crate::sampling::Effort;
 use crate::solvers::Solver;
-use std::time::{SystemTime, UNIX_EPOCH};
 
 /// What can be asked for.
 pub(crate) const USAGE: &str = "\
@@ -123,6 +122,7 @@ fn seeds(list: &str) -> Result<Vec<u64>, String> {
 /// Two seeds that nobody has tuned on.
 #[allow(clippy::disallowed_types, reason = "seeds of a measurement, printed for the next run")]
 fn fresh_seeds() -> Vec<u64> {
+    use std::time::{SystemTime, UNIX_EPOCH};
     let now = SystemTime::now().duration_since(UNIX_EPOCH).map_or(0, |since| since.as_secs());
     vec![2 + now % 100_000, 200_003 + now % 99_991]
 }

@@ -1,12 +1,15 @@
 //! A linear program as plain lists, as the shared generators fill it and every solver reads it.
 
+/// Entries by column, lower and upper side.
+pub(crate) type Row = (Vec<(usize, f64)>, f64, f64);
+
 /// min cᵀx, L ≤ Ax ≤ U, l ≤ x ≤ u.
 #[derive(Clone, Debug, Default)]
 pub(crate) struct Shadow {
     pub(crate) cost: Vec<f64>,
     pub(crate) lower: Vec<f64>,
     pub(crate) upper: Vec<f64>,
-    pub(crate) rows: Vec<(Vec<(usize, f64)>, f64, f64)>,
+    pub(crate) rows: Vec<Row>,
 }
 
 impl Shadow {

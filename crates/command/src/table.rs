@@ -156,6 +156,7 @@ fn notes(one: &RivalResult) -> Vec<String> {
     notes.extend(one.error.as_ref().map(|error| error.message.clone()));
     notes.extend(one.root.as_ref().and_then(|root| explain::root(root, one.maximise)));
     notes.extend(one.conflict.as_ref().map(explain::conflict));
+    notes.extend(one.search.as_ref().and_then(explain::search));
     if let Some(root) = &one.root
         && let (Some(exact), true) = (&root.checked_bound, root.checked)
         && exact.contains('/')

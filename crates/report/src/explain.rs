@@ -1,12 +1,14 @@
 //! Why a rival has no plan or no bound, in sentences: families in conflict, rows of a Farkas
 //! ray, the direction along which an objective has no end.
 
-use record::results::{ConflictLevel, ConflictReport, RootReport, Status};
+use record::results::{ConflictLevel, ConflictReport, RootReport, SearchReport, Status};
 
 use crate::number::{count, of, short};
 
 /// So many rows or columns are named; of the others the number is told.
 const NAMED: usize = 6;
+/// So many nodes without a plan are worth a word.
+const MANY: u32 = 1_000;
 /// So many characters of a name are shown.
 const NAME: usize = 60;
 
@@ -18,6 +20,22 @@ pub fn root(root: &RootReport, maximise: bool) -> Option<String> {
         Status::Unbounded => Some(direction(&root.ray, maximise)),
         _ => None,
     }
+}
+
+/// What to do about a search that a limit stopped before it found a plan; `None` for any other.
+/// A contradiction that only shows once all of a tree is closed takes few nodes on few stops and
+/// more than anybody has on many.
+#[must_use]
+pub fn search(search: &SearchReport) -> Option<String> {
+    let in_vain = search.status == Status::Limit && search.incumbent.is_none();
+    (in_vain && search.nodes >= MANY).then(|| {
+        format!(
+            "No plan was found in {}, which does not say that there is none. Run this rival on a \
+             small part of the instance: a search that ends without a plan names the families that \
+             cannot hold together.",
+            of(u64::from(search.nodes), "node")
+        )
+    })
 }
 
 /// Families that cannot hold together, and what is known of the set.
@@ -144,6 +162,31 @@ mod tests {
         assert!(text.contains("falls without end along this direction: a up by 1, b down by 2."));
         assert!(direction(&ray(&names[..7]), true).contains("and 1 more column."));
         assert!(direction(&[], true).contains("rises"));
+    }
+
+    #[test]
+    fn a_search_in_vain_says_what_shows_a_contradiction_sooner() {
+        let vain = SearchReport {
+            status: Status::Limit,
+            bound: Some(163.3),
+            incumbent: None,
+            gap: None,
+            nodes: 20_000,
+            open: 7,
+            iterations: 0,
+            work: 0,
+            solution: Vec::new(),
+            checked: false,
+            stopped: None,
+        };
+        let text = search(&vain).unwrap();
+        assert!(
+            text.starts_with("No plan was found in 20,000 nodes, which does not say"),
+            "{text}"
+        );
+        assert_eq!(search(&SearchReport { nodes: 30, ..vain.clone() }), None);
+        assert_eq!(search(&SearchReport { incumbent: Some(1.0), ..vain.clone() }), None);
+        assert_eq!(search(&SearchReport { status: Status::Infeasible, ..vain }), None);
     }
 
     #[test]

@@ -19,7 +19,8 @@ const SHOWN: usize = 6;
 pub(crate) fn reason(id: LaneId, lane: &Lane, writing: Option<&UseStateHandle<bool>>) -> Html {
     let told = match (&lane.root, &lane.conflict) {
         (_, Some(conflict)) => Some(explain::conflict(conflict)),
-        (Some(root), None) => explain::root(root, lane.maximise()),
+        (Some(root), None) => explain::root(root, lane.maximise())
+            .or_else(|| lane.search.as_deref().and_then(explain::search)),
         (None, None) => None,
     };
     let Some(told) = told else { return Html::default() };

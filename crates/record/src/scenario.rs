@@ -5,6 +5,15 @@ use std::collections::BTreeMap;
 
 use serde::{Deserialize, Serialize};
 
+/// At most this many rivals in a scenario: each is a lane with a worker of its own.
+pub const MOST_RIVALS: usize = 100;
+
+/// At most this many instances in a scenario.
+pub const MOST_INSTANCES: usize = 100;
+
+/// At most this many acts by hand in a rival; each is shown and replayed.
+pub const MOST_ACTS: usize = 10_000;
+
 /// A scenario file, version 1.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Scenario {

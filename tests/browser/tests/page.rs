@@ -56,3 +56,6 @@ mod keeping;
 
 #[path = "page/steering.rs"]
 mod steering;
+
+#[path = "page/hostile.rs"]
+mod hostile;

@@ -9,6 +9,7 @@ use record::message::{Envelope, LaneJob, Reply, Request, RunNumber};
 use record::results::Status;
 use yew::{Callback, UseReducerDispatcher};
 
+use crate::browser::clock;
 use crate::browser::worker::{FromWorker, WorkerHandle};
 use crate::state::board::{Board, BoardAction};
 use crate::state::outcomes::{Kept, Outcome};
@@ -151,13 +152,11 @@ impl Elsewhere {
             // A worker that takes no message tells so by its error event.
             let _ = worker.post(&Request::Run { nodes: None });
         }
-        inner.limit = (seconds > 0.0).then(|| {
-            Timeout::new((seconds * 1000.0) as u32, move || {
-                let Some(inner) = weak.upgrade() else { return };
-                if let Some(worker) = &inner.borrow().worker {
-                    let _ = worker.post(&Request::Pause);
-                }
-            })
+        inner.limit = clock::after(seconds, move || {
+            let Some(inner) = weak.upgrade() else { return };
+            if let Some(worker) = &inner.borrow().worker {
+                let _ = worker.post(&Request::Pause);
+            }
         });
     }
 

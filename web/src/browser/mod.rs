@@ -1,6 +1,7 @@
 //! The thin layer over the browser: workers, frames, sizes, colours, the lanes' runs.
 
 pub(crate) mod checks;
+pub(crate) mod clock;
 pub(crate) mod elsewhere;
 pub(crate) mod frame;
 pub(crate) mod handover;

@@ -22,6 +22,7 @@ use record::scenario::{Act, InstanceText};
 use yew::{Callback, UseReducerDispatcher};
 
 use crate::browser::checks::{Checks, unchecked};
+use crate::browser::clock;
 use crate::browser::frame::Frame;
 use crate::browser::opinions::{Opinions, Told};
 use crate::browser::run::{LaneRun, Led, TreeCell};
@@ -172,16 +173,13 @@ impl Session {
         let mut inner = self.0.borrow_mut();
         let Some(lane) = inner.lanes.get_mut(&id) else { return };
         let seconds = lane.job.settings.seconds;
-        if seconds <= 0.0 {
-            return;
-        }
         let session = self.downgrade();
-        lane.limit = Some(Timeout::new((seconds * 1000.0) as u32, move || {
+        lane.limit = clock::after(seconds, move || {
             if let Some(session) = upgrade(&session) {
                 session.pause(id);
                 session.tell(id, LaneAction::Notice(out_of_time(seconds)));
             }
-        }));
+        });
     }
 
     /// Asks for the search as soon as the root is solved, from the beginning if the run is over.

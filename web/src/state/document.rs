@@ -14,7 +14,9 @@ use crate::state::same::Made;
 use crate::state::steer::Steer;
 use record::file::{looks_like_a_scenario, parse};
 use record::message::{Binding, CatalogueEntry, InstanceReport};
-use record::scenario::{FamilyState, InstanceText, Rival, Role, Run, Scenario, letter};
+use record::scenario::{
+    FamilyState, InstanceText, MOST_RIVALS, Rival, Role, Run, Scenario, letter,
+};
 
 /// The readers, as the scenario file names them, with a word for people.
 pub(crate) const READERS: [(&str, &str); 7] = [
@@ -214,8 +216,16 @@ impl Document {
             || rival.families.values().any(|&state| state == FamilyState::Out)
     }
 
-    /// A rival joins.
+    /// Whether it has as many rivals as a scenario may have.
+    pub(crate) fn is_full(&self) -> bool {
+        self.slots.len() >= MOST_RIVALS
+    }
+
+    /// A rival joins, unless there are as many as there may be.
     pub(crate) fn push(&mut self, rival: Rival) {
+        if self.is_full() {
+            return;
+        }
         self.slots.push(Slot { id: LaneId(self.next), rival: Shared::new(rival), shipped: None });
         self.next += 1;
     }
@@ -476,6 +486,19 @@ mod tests {
         assert_ne!(after.slots[0], one);
         assert_eq!(after.slots[1], two);
         assert_eq!(after.slots[0].rival.families["order"], FamilyState::Out);
+    }
+
+    /// A scenario with one more could be saved, but not opened again.
+    #[test]
+    fn no_rival_joins_a_full_document() {
+        let mut full = (*document()).clone();
+        while !full.is_full() {
+            full.push(Rival::default());
+        }
+        let (last, count) = (full.slots.last().cloned(), full.slots.len());
+        full.push(Rival::default());
+        full.edit(Edit::Duplicate(full.slots[0].id));
+        assert_eq!((full.slots.last().cloned(), full.slots.len()), (last, count));
     }
 
     #[test]

@@ -91,6 +91,7 @@ impl Document {
     /// Carries an edit out; a lane that is gone, or a text that is unsound, changes nothing.
     pub(crate) fn edit(&mut self, edit: Edit) {
         match edit {
+            Edit::Duplicate(_) if self.is_full() => {}
             Edit::Use(id, draft, report) if report.is_sound() => {
                 if let Some(slot) = self.slot(id) {
                     slot.take(draft, &report.families);

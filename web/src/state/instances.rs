@@ -1,6 +1,6 @@
 //! Several instances in one scenario: every rival runs on each, the lanes show the chosen one.
 
-use record::scenario::InstanceText;
+use record::scenario::{InstanceText, MOST_INSTANCES};
 
 use crate::state::document::Document;
 use crate::state::pointer::Shared;
@@ -41,6 +41,7 @@ impl Document {
     pub(crate) fn edit_instances(&mut self, edit: InstanceEdit) {
         let mut all = self.instances();
         let chosen = match edit {
+            InstanceEdit::Add if all.len() >= MOST_INSTANCES => return,
             InstanceEdit::Add => {
                 let title = instance_title(&self.draft, self.chosen);
                 if self.draft.title.is_empty() {

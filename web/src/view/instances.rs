@@ -1,5 +1,6 @@
 //! The instances of the scenario by title, where there are several; one is chosen.
 
+use record::scenario::MOST_INSTANCES;
 use web_sys::HtmlInputElement;
 use yew::prelude::*;
 
@@ -39,7 +40,9 @@ pub(crate) fn Instances(props: &InstanceProps) -> Html {
                 />
                 <button type="button" data-testid="remove-instance" onclick={press(InstanceEdit::Remove)}>{ "Remove" }</button>
             }
-            <button type="button" data-testid="add-instance" onclick={press(InstanceEdit::Add)}>{ "Add an instance" }</button>
+            if all.len() < MOST_INSTANCES {
+                <button type="button" data-testid="add-instance" onclick={press(InstanceEdit::Add)}>{ "Add an instance" }</button>
+            }
         </div>
     }
 }

@@ -1,6 +1,7 @@
 //! The rivals: one lane each under one shared axis.
 
 use record::message::CatalogueEntry;
+use record::scenario::MOST_RIVALS;
 use report::axis::Axis;
 use report::number::short;
 use web_sys::HtmlSelectElement;
@@ -66,7 +67,11 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
                 />
             }
             <Key />
-            <AddRival catalogue={document.catalogue.clone()} />
+            if document.is_full() {
+                <p class="small soft">{ format!("{MOST_RIVALS} rivals: a scenario holds no more.") }</p>
+            } else {
+                <AddRival catalogue={document.catalogue.clone()} />
+            }
         </section>
     }
 }

@@ -9,8 +9,8 @@ use super::Origin;
 use super::fields::{Findings, Table};
 use crate::place::Finding;
 use crate::scenario::{
-    Act, ActKind, BranchingRule, FamilyState, InstanceText, Rival, Role, Run, Scenario, Selection,
-    Study,
+    Act, ActKind, BranchingRule, FamilyState, InstanceText, MOST_ACTS, MOST_INSTANCES, MOST_RIVALS,
+    Rival, Role, Run, Scenario, Selection, Study,
 };
 
 const SCENARIO: [&str; 10] =
@@ -132,7 +132,7 @@ impl Decoder<'_> {
         let mut instances = self.instances(table).into_iter();
         scenario.instance = instances.next();
         scenario.further_instances = instances.collect();
-        for (rival, span) in self.findings.tables(table, "rival") {
+        for (rival, span) in self.at_most(MOST_RIVALS, table, "rival") {
             let rival = self.rival(rival, span);
             scenario.rivals.push(rival);
         }
@@ -143,6 +143,23 @@ impl Decoder<'_> {
             scenario.studies.extend(self.study(study, span));
         }
         scenario
+    }
+
+    /// The tables of `[[key]]`; more than `most` are complained of once, and only `most` are read.
+    fn at_most<'d, 't>(
+        &mut self,
+        most: usize,
+        table: &'d Table<'t>,
+        key: &str,
+    ) -> Vec<(&'d Table<'t>, Range<usize>)> {
+        let mut tables = self.findings.tables(table, key);
+        if let Some((_, span)) = tables.get(most) {
+            let message = format!("there are {} [[{key}]] tables", tables.len());
+            let mend = format!("{most} are possible: split the scenario");
+            self.findings.error("too-many", span.clone(), message, mend);
+            tables.truncate(most);
+        }
+        tables
     }
 
     /// Whether the version is one that can be read.
@@ -166,7 +183,7 @@ impl Decoder<'_> {
         if let Some(one) = value.get_ref().as_table() {
             return vec![self.instance(one, value.span())];
         }
-        let tables = self.findings.tables(table, "instance");
+        let tables = self.at_most(MOST_INSTANCES, table, "instance");
         tables.into_iter().map(|(one, span)| self.instance(one, span)).collect()
     }
 
@@ -228,7 +245,7 @@ impl Decoder<'_> {
                 rival.families.extend(state.map(|state| (key.to_owned(), state)));
             }
         }
-        for (act, span) in self.findings.tables(table, "act") {
+        for (act, span) in self.at_most(MOST_ACTS, table, "act") {
             rival.acts.extend(self.act(act, span));
         }
         rival

@@ -102,6 +102,8 @@ fn syntax(text: &str, failure: &toml::de::Error) -> Finding {
         "each key stands once in its table: remove or rename one"
     } else if message.contains("multi-line") {
         "a text that begins with three quotes ends with the same three"
+    } else if message.contains("recursion") {
+        "lists and tables stand in one another too deeply: no field needs more than a few levels"
     } else {
         "a line is a [table], or a key = value: texts in quotes, long texts between ''' and '''"
     };

@@ -8,7 +8,8 @@ use proptest::prelude::*;
 
 use super::*;
 use crate::scenario::{
-    Act, ActKind, BranchingRule, FamilyState, Field, InstanceText, Rival, Role, Run, Study,
+    Act, ActKind, BranchingRule, FamilyState, Field, InstanceText, MOST_ACTS, MOST_RIVALS, Rival,
+    Role, Run, Study,
 };
 
 /// The example of the file's description, every field of version 1 in it.
@@ -290,5 +291,34 @@ proptest! {
     fn nothing_panics(start in 0_usize..EXAMPLE.len(), length in 0_usize..40, put in any_text()) {
         let end = (start + length).min(EXAMPLE.len());
         let _ = parse(&format!("{}{put}{}", &EXAMPLE[..start], &EXAMPLE[end..]));
+    }
+}
+
+#[test]
+fn more_rivals_than_a_page_can_hold_are_refused_at_the_first_too_many() {
+    let rivals =
+        |count: usize| format!("hullward = 1\n{}", "[[rival]]\nfrom = \"a\"\n".repeat(count));
+    assert_eq!(parse(&rivals(MOST_RIVALS)).complaints, []);
+    let (line, _, message, mend) = only(&rivals(MOST_RIVALS + 1));
+    assert_eq!(line as usize, 2 + 2 * MOST_RIVALS);
+    assert_eq!(message, "there are 101 [[rival]] tables");
+    assert_eq!(mend, "100 are possible: split the scenario");
+    let acts = "[[rival.act]]\ndo = \"stop\"\n".repeat(MOST_ACTS + 1);
+    let (line, _, message, _) = only(&format!("{}{acts}", rivals(1)));
+    assert_eq!(line as usize, 4 + 2 * MOST_ACTS);
+    assert_eq!(message, "there are 10001 [[act]] tables");
+}
+
+#[test]
+fn nesting_without_end_is_refused() {
+    const DEEP: usize = 100_000;
+    let lists = format!("title = {}{}", "[".repeat(DEEP), "]".repeat(DEEP));
+    let tables = format!("title = {}1{}", "{a=".repeat(DEEP), "}".repeat(DEEP));
+    let dotted = format!("{}a = 1", "a.".repeat(DEEP));
+    let heading = format!("[{}a]", "a.".repeat(DEEP));
+    for text in [lists, tables, dotted, heading] {
+        let said = complaints(&format!("hullward = 1\n{text}\n"));
+        let (_, _, message, mend) = &said[0];
+        assert!(message.contains("recursion") && mend.contains("too deeply"), "{said:?}");
     }
 }

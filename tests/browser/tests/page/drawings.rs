@@ -77,6 +77,8 @@ async fn lots_are_bars_by_period_and_another_drawing_can_be_chosen() -> Outcome<
         assert!(bars.contains('x') && bars.contains("12"), "{bars}");
         let nodes = format!("{} summary", part("C", "twin"));
         browser.select(&nodes).await?.click().await?;
+        let listed = async || Ok(!browser.find_all("treeitem", "").await?.is_empty());
+        browser.until("the nodes are listed", SOON, listed).await?;
         browser.find_all("treeitem", "").await?[0].click().await?;
         browser.find("heading", "Node 1 of C").await?;
         let choice = browser.select("[data-testid=drawn]").await?;

@@ -9,6 +9,7 @@ use crate::state::editor::Edit;
 use crate::state::history::History;
 use crate::state::instances::InstanceEdit;
 use crate::state::lane::LaneId;
+use crate::state::mps::looks_like_mps;
 use crate::state::pointer::Shared;
 use crate::state::same::Made;
 use crate::state::steer::Steer;
@@ -293,6 +294,27 @@ pub(crate) fn broken_scenario(text: &str) -> Option<InstanceReport> {
 }
 
 impl Document {
+    /// The document after a text was given: another scenario, a rival in MPS, or the instance.
+    fn given(self: Rc<Self>, text: String) -> Rc<Self> {
+        if text == self.draft.text {
+            return self;
+        }
+        let mut document = (*self).clone();
+        if let Some(scenario) = scenario(&text) {
+            return document.open_another(scenario).into();
+        }
+        if looks_like_mps(&text) && !self.is_full() {
+            document.push(Rival { mps: Some(text), ..Rival::default() });
+            return document.into();
+        }
+        let another = is_another(&self.draft.text, &text);
+        let InstanceText { reader, title, bind, .. } = (*self.draft).clone();
+        let title = if self.others.is_empty() { String::new() } else { title };
+        let (reader, bind) = if another { (None, BTreeMap::new()) } else { (reader, bind) };
+        document.draft(InstanceText { reader, title, text, bind });
+        document.into()
+    }
+
     /// The document after an action; its history is the matter of [`crate::state::history`].
     pub(crate) fn apply(self: Rc<Self>, action: DocumentAction) -> Rc<Self> {
         let mut document = (*self).clone();
@@ -304,27 +326,7 @@ impl Document {
                 document.titled = !title.trim().is_empty();
                 document.title = title;
             }
-            DocumentAction::Text(text) => {
-                if text == document.draft.text {
-                    return self;
-                }
-                if let Some(scenario) = scenario(&text) {
-                    return document.open_another(scenario).into();
-                }
-                let reader = document
-                    .draft
-                    .reader
-                    .clone()
-                    .filter(|_| !is_another(&document.draft.text, &text));
-                let title = document.draft.title.clone();
-                let title = if document.others.is_empty() { String::new() } else { title };
-                let bind = if is_another(&document.draft.text, &text) {
-                    BTreeMap::new()
-                } else {
-                    document.draft.bind.clone()
-                };
-                document.draft(InstanceText { reader, title, text, bind });
-            }
+            DocumentAction::Text(text) => return self.given(text),
             DocumentAction::Reader(reader) => {
                 document.draft(InstanceText { reader, ..(*document.draft).clone() });
             }
@@ -460,6 +462,16 @@ mod tests {
         assert_eq!(broken.slots.len(), 2);
         assert!(!broken_scenario(&broken.draft.text).unwrap().complaints.is_empty());
         assert!(broken_scenario("0 1\n1 0").is_none());
+    }
+
+    #[test]
+    fn a_pasted_model_in_mps_is_another_rival_and_the_instance_stays() {
+        let text = "NAME tools\nROWS\n N cost\nCOLUMNS\nENDATA\n".to_owned();
+        let before = document();
+        let after = Rc::clone(&before).reduce(DocumentAction::Text(text.clone()));
+        assert_eq!(after.slots[2].rival.mps, Some(text));
+        assert_eq!(after.draft, before.draft);
+        assert_eq!(after.reduce(DocumentAction::Undo).slots.len(), 2);
     }
 
     #[test]

@@ -11,6 +11,7 @@ pub(crate) mod history;
 pub(crate) mod instances;
 pub(crate) mod kept;
 pub(crate) mod lane;
+pub(crate) mod mps;
 mod naming;
 pub(crate) mod outcomes;
 pub(crate) mod outline;

@@ -6,6 +6,7 @@ use web_sys::{File, HtmlInputElement, HtmlSelectElement, HtmlTextAreaElement};
 use yew::prelude::*;
 
 use crate::state::document::{DocumentAction, READERS};
+use crate::state::mps::looks_like_mps;
 use crate::state::pointer::Shared;
 use crate::view::hands::{Hands, use_hands};
 
@@ -63,7 +64,7 @@ pub(crate) fn Paste(props: &PasteProps) -> Html {
             ondragleave={Callback::from(move |_: DragEvent| leave.set(false))}
         >
             <label for={BOX}>
-                { "Paste a distance table, points, a list of drives, a TSPLIB file or a scenario; or drop a file here." }
+                { "Paste a distance table, points, a list of drives, a TSPLIB file, a scenario, or a model in MPS as a rival; or drop a file here." }
             </label>
             <TextBox draft={props.draft.clone()} broken={props.broken} />
             <div class="row">
@@ -84,9 +85,15 @@ fn give(hands: Option<&Hands>, text: String) {
 #[component]
 fn TextBox(props: &PasteProps) -> Html {
     let hands = use_hands();
+    let draft = props.draft.clone();
     let oninput = Callback::from(move |event: InputEvent| {
         let area: HtmlTextAreaElement = event.target_unchecked_into();
-        give(hands.as_ref(), area.value());
+        let text = area.value();
+        if looks_like_mps(&text) {
+            // It becomes a rival: the box goes on to hold the instance.
+            area.set_value(&draft.text);
+        }
+        give(hands.as_ref(), text);
     });
     html! {
         <textarea

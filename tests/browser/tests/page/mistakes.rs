@@ -211,6 +211,7 @@ async fn noise_of_five_megabytes_is_answered_soon() -> Outcome<()> {
             field.value = noise;
             field.scrollHeight;
             const begun = performance.now();
+            if (document.querySelector('[data-testid=complaints]')) throw new Error('said before');
             field.dispatchEvent(new InputEvent('input', { bubbles: true }));
             const look = () => {
               const told = document.querySelector('[data-testid=complaints]');
@@ -221,7 +222,9 @@ async fn noise_of_five_megabytes_is_answered_soon() -> Outcome<()> {
         ";
         let said = browser.script_async(paste_noise, vec![serde_json::to_value(&field)?]).await?;
         let (answered, laid) = (said[0].as_f64(), said[1].as_f64());
-        assert!(answered.is_some_and(|took| took <= 2_000.0) || answered <= laid, "{said}");
+        let soon = |took| took <= 2_000.0 || laid.is_some_and(|laid| took <= laid);
+        assert!(answered.is_some_and(soon), "{said}");
+        assert_ne!(said[3], "", "what to do is said");
         assert_eq!(said[2], 5_000_000, "the text stays");
         paste(browser, TABLE).await?;
         browser.shows("4 stops, 12 drives").await

@@ -3,7 +3,7 @@
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::visit::{Source, visit};
 
-use crate::lanes::{paste, status, text};
+use crate::lanes::{paste, status, text, value};
 
 const TSPLIB: &str = include_str!("../../fixtures/eight-stops.atsp");
 
@@ -81,6 +81,40 @@ async fn nonsense_never_takes_the_page_down() -> Outcome<()> {
         }
         paste(browser, TSPLIB).await?;
         browser.shows("8 stops, 56 drives").await
+    })
+    .await
+}
+
+/// Invented: two tools of values 5 and 4, weights 3 and 2, at most 4; two thirds of the first beside
+/// the second, by hand: 4 + 5 · 2/3.
+const TOOLS: &str = "NAME tools
+OBJSENSE
+    MAX
+ROWS
+ N value
+ L weight
+COLUMNS
+    M1 'MARKER' 'INTORG'
+    a value 5 weight 3
+    b value 4 weight 2
+    M2 'MARKER' 'INTEND'
+RHS
+    RHS weight 4
+BOUNDS
+ UP BND a 1
+ UP BND b 1
+ENDATA
+";
+
+#[tokio::test(flavor = "multi_thread")]
+async fn a_model_in_mps_becomes_a_rival_beside_the_others() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        status(browser, "C", "root solved").await?;
+        paste(browser, TOOLS).await?;
+        status(browser, "D", "root solved").await?;
+        let bound = value(browser, "D", "root-bound").await?;
+        assert!(bound.is_some_and(|bound| (bound - (4.0 + 10.0 / 3.0)).abs() < 0.01), "{bound:?}");
+        browser.shows("18 stops, 306 drives").await
     })
     .await
 }

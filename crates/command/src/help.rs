@@ -71,7 +71,8 @@ Runs every rival of the scenarios, one after another, and prints a table.
 A rival that cannot be run does not keep the others from running.
 The bound is always in the direction of the objective. A gap is
 |incumbent - bound| / |incumbent|. What is called checked was checked in exact
-arithmetic.
+arithmetic: a root bound as the optimum of the relaxation (proof: exact), or as
+a bound that differs from the one found by so much (proof: within).
 ";
 
 const READ: &str = "\

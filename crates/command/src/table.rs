@@ -3,10 +3,11 @@
 use std::collections::BTreeSet;
 use std::io::{Result, Write};
 
-use record::results::{RivalResult, SearchReport, Status};
+use record::results::{Proof, RivalResult, RootReport, SearchReport, Status};
 use record::scenario::Scenario;
 use report::explain;
 use report::number::{count, of, percent, short};
+use report::proof;
 
 /// Stands under every table.
 const CAUTION: &str = "\
@@ -14,7 +15,9 @@ A plan that comes out of a model is a decision aid; driving, working-time, energ
 safety rules of the place, and the people licensed to apply them, come first.";
 
 /// What the marks beside a root bound mean.
-const LEGEND: &str = "✓ checked in exact arithmetic, = a second LP code agrees, ≠ it does not";
+const LEGEND: &str = "\
+✓ proved in exact arithmetic, ~ proved to within the amount said above; \
+= a second LP code agrees, ≠ it does not";
 
 /// Longer fractions are no news to a reader; they stand in the JSON.
 const LONGEST_FRACTION: usize = 16;
@@ -66,7 +69,7 @@ pub(crate) fn print(
             writeln!(out, "{}: {sentence}", one.rival)?;
         }
     }
-    if results.iter().any(|one| one.second.is_some()) {
+    if results.iter().any(|one| one.root.is_some()) {
         writeln!(out, "{LEGEND}")?;
     }
     writeln!(out, "\n{CAUTION}")
@@ -105,7 +108,11 @@ fn cells(one: &RivalResult) -> Vec<String> {
         Some(false) => " ≠",
         None => "",
     };
-    let root_checked = if root.is_some_and(|root| root.checked) { " ✓" } else { "" };
+    let root_checked = match root.map_or(Proof::None, |root| root.proof) {
+        Proof::Exact => " ✓",
+        Proof::Within => " ~",
+        Proof::None => "",
+    };
     vec![
         one.rival.clone(),
         one.title.clone(),
@@ -147,6 +154,19 @@ fn status(one: &RivalResult) -> String {
     }
 }
 
+/// What was proved of the root's bound, where the table does not say all of it.
+fn proved(root: &RootReport) -> Option<String> {
+    match (root.proof, &root.checked_bound) {
+        (Proof::Exact, Some(exact)) if exact.contains('/') && exact.len() <= LONGEST_FRACTION => {
+            Some(format!("root bound proved: {exact}"))
+        }
+        (Proof::Within, _) => {
+            Some(format!("root bound {}", proof::mark(root.proof, root.checked_within)))
+        }
+        _ => None,
+    }
+}
+
 /// What a reader must know beside the numbers.
 fn notes(one: &RivalResult) -> Vec<String> {
     let mut notes = one.left_out.clone();
@@ -157,13 +177,7 @@ fn notes(one: &RivalResult) -> Vec<String> {
     notes.extend(one.root.as_ref().and_then(|root| explain::root(root, one.maximise)));
     notes.extend(one.conflict.as_ref().map(explain::conflict));
     notes.extend(one.search.as_ref().and_then(explain::search));
-    if let Some(root) = &one.root
-        && let (Some(exact), true) = (&root.checked_bound, root.checked)
-        && exact.contains('/')
-        && exact.len() <= LONGEST_FRACTION
-    {
-        notes.push(format!("root bound proved: {exact}"));
-    }
+    notes.extend(one.root.as_ref().and_then(proved));
     let silent_or_not = one.second.as_ref().filter(|second| second.agrees != Some(true));
     notes.extend(silent_or_not.map(|second| second.words.clone()));
     let separated = one.families.iter().filter(|family| !family.separation.is_empty());

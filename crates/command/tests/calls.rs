@@ -82,6 +82,8 @@ fn two_rivals_agree_and_every_field_is_there() {
         assert_eq!(object["root"]["checked"], true);
         assert!(object["root"]["bound"].as_f64().is_some_and(|bound| bound <= 15.0));
         assert!(object["root"]["checked_bound"].is_string());
+        let proof = (&object["root"]["proof"], &object["root"]["checked_within"]);
+        assert_eq!(proof, (&Value::from("exact"), &Value::Null));
         let (ours, second) = (&object["root"]["bound"], &object["root"]["second_opinion"]);
         let near = ours.as_f64().zip(second.as_f64()).map(|(a, b)| (a - b).abs() < 1e-7);
         assert_eq!(near, Some(true), "{ours} and {second}");
@@ -207,6 +209,21 @@ fn infeasible_and_unbounded_are_results_with_status_zero() {
         (&Value::from("cap"), &Value::from(true))
     );
     assert_eq!(lines[1]["root"]["bound"], 2.5);
+}
+
+/// A root that is stopped has a bound that is proved and not the optimum, and says so.
+#[test]
+fn a_bound_that_is_not_the_optimum_is_told_from_one_that_is() {
+    let early = two_rivals("[run]\niterations = 6\n");
+    let output = hullward(&["run", "-", "--json"], &early);
+    assert_eq!(status(&output), 1, "{}", err(&output));
+    let root = &lines(&output)[0]["root"];
+    assert_eq!((&root["status"], &root["proof"]), (&"limit".into(), &"within".into()), "{root}");
+    assert!(root["checked_within"].as_f64().is_some_and(|away| away < 1e-6), "{root}");
+    let table = out(&hullward(&["run", "-"], &early));
+    assert!(table.contains(" ~") && table.contains("A: root bound checked to within"), "{table}");
+    let table = out(&hullward(&["run", "-"], &two_rivals("")));
+    assert!(table.contains(" ✓") && !table.contains("checked to within"), "{table}");
 }
 
 #[test]

@@ -5,7 +5,7 @@ use serde::{Deserialize, Serialize};
 
 use crate::event::{Branching, Event, NodeNumber, NodeState};
 use crate::handover::{Form, Written};
-use crate::results::{ConflictReport, ErrorReport, FamilyReport, RootReport, SearchReport};
+use crate::results::{ConflictReport, ErrorReport, FamilyReport, Proof, RootReport, SearchReport};
 use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
 use crate::typeset::Typeset;
 
@@ -387,6 +387,10 @@ pub struct NodeDetail {
     pub bound: Option<f64>,
     /// The bound as an exact fraction, when it was checked in exact arithmetic.
     pub checked_bound: Option<String>,
+    /// Whether what was proved is the optimum of its relaxation itself.
+    pub proof: Proof,
+    /// By how much the proved bound differs from `bound`, where it is not known to be the optimum.
+    pub checked_within: Option<f64>,
     /// The branchings from the root to it.
     pub path: Vec<Branching>,
     /// Every column with a value other than 0, or that is fractional.

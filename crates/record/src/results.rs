@@ -115,6 +115,19 @@ pub struct FamilyReport {
     pub separation: String,
 }
 
+/// What exact arithmetic proved of a bound.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "lowercase")]
+pub enum Proof {
+    /// It is the optimum of the relaxation, a fraction; or that there is no point.
+    Exact,
+    /// A bound, away from the value that was found by `checked_within`.
+    Within,
+    /// Nothing.
+    #[default]
+    None,
+}
+
 /// The relaxation of the formulation as it is meant.
 #[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
 pub struct RootReport {
@@ -126,6 +139,13 @@ pub struct RootReport {
     pub checked: bool,
     /// The exact bound that was proved, as a fraction: "756/5".
     pub checked_bound: Option<String>,
+    /// Whether what was proved is the optimum of the relaxation itself.
+    #[serde(default)]
+    pub proof: Proof,
+    /// By how much the proved bound differs from `bound`, rounded up, where it is a bound and not
+    /// known to be the optimum.
+    #[serde(default)]
+    pub checked_within: Option<f64>,
     /// The value that an independent LP code found, to nine digits, where one was asked.
     #[serde(default)]
     pub second_opinion: Option<f64>,

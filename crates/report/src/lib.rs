@@ -9,6 +9,7 @@
 //! | [`density`] | a large tree as counts by cell |
 //! | [`map`] | places fitted to a frame, arcs, hulls |
 //! | [`opinion`] | our root beside what a second LP code says |
+//! | [`proof`] | what exact arithmetic proved of a bound, in words |
 //! | [`labels`] | names beside their stops without collisions |
 //!
 //! Everything is pure and the same on every machine.
@@ -21,3 +22,4 @@ pub mod layout;
 pub mod map;
 pub mod number;
 pub mod opinion;
+pub mod proof;

@@ -9,10 +9,11 @@
 //! |---|---|---|
 //! | a bound | a weaker bound, or none at all | it is wrong: our bound is proved |
 //! | a bound | a stronger bound, or no point | nothing: ours holds, but the truth may be stronger |
+//! | the optimum, proved as such | anything else | it is wrong: bound and point are proved |
 //! | no point | a value, or no bound | it is wrong: that there is no point is proved |
 
 use record::opinion::Opinion;
-use record::results::{RootReport, Status};
+use record::results::{Proof, RootReport, Status};
 
 use crate::number::{full, short};
 
@@ -36,7 +37,8 @@ pub enum Verdict {
 #[must_use]
 pub fn verdict(root: &RootReport, maximise: bool, opinion: &Opinion) -> Verdict {
     let settled = |refuted: bool| {
-        if refuted && root.checked { Verdict::Refuted } else { Verdict::Undecided }
+        let proved = root.checked && (refuted || root.proof == Proof::Exact);
+        if proved { Verdict::Refuted } else { Verdict::Undecided }
     };
     match (root.status, root.bound, opinion) {
         (_, _, Opinion::Silent(_)) | (Status::Limit | Status::Error, _, _) => Verdict::Silent,
@@ -50,6 +52,7 @@ pub fn verdict(root: &RootReport, maximise: bool, opinion: &Opinion) -> Verdict 
         (Status::Infeasible, _, Opinion::Infeasible)
         | (Status::Unbounded, _, Opinion::Unbounded) => Verdict::Agrees,
         (Status::Optimal, _, Opinion::Unbounded) | (Status::Infeasible, _, _) => settled(true),
+        (Status::Optimal, _, Opinion::Infeasible) => settled(false),
         (Status::Optimal | Status::Unbounded, _, _) => Verdict::Undecided,
     }
 }

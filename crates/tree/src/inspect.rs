@@ -8,6 +8,7 @@ use std::collections::BTreeSet;
 
 use lp::{Limits, Outcome};
 use model::{ColumnId, LabelId, Number};
+use proof::Budget;
 use separate::{Progress, Separator, Violated};
 
 use crate::acts::Refusal;
@@ -19,6 +20,9 @@ use crate::search::Search;
 /// Simplex iterations spent at most on the relaxation of a node that is not solved yet: from its
 /// parent's basis a branching takes some tens.
 const LOOK: u64 = 1_000;
+
+/// What the exact optimum of a node that is looked at may cost: some hundredths of a second.
+const EYE: Budget = Budget { ticks: 4_000_000, bits: 8_000 };
 
 /// A set of labels and the member of a family that it violates.
 #[derive(Debug, Clone, PartialEq)]
@@ -45,8 +49,11 @@ pub struct NodeView {
     pub depth: u32,
     /// Its own bound in the direction of the objective.
     pub bound: Option<f64>,
-    /// The bound that its multipliers prove in exact arithmetic.
+    /// The bound that is proved in exact arithmetic: from its basis, where that takes little, or
+    /// what its multipliers prove.
     pub checked_bound: Option<Number>,
+    /// Whether the checked bound is the exact optimum of its relaxation.
+    pub exact: bool,
     /// The branchings from the root to it.
     pub path: Vec<Branch>,
     /// The value of each column; empty when it has no point.
@@ -88,6 +95,7 @@ impl Search {
             depth: node.depth,
             bound: None,
             checked_bound: None,
+            exact: false,
             path,
             x: Vec::new(),
             reduced_costs: Vec::new(),
@@ -115,10 +123,14 @@ impl Search {
         let Ok(mut simplex) = relaxation.rebuilt(rows, &view.path) else { return };
         simplex.load_basis(basis);
         let iterations = view.ahead.then_some(LOOK);
-        match simplex.solve(Limits { iterations, ..Limits::default() }) {
+        simplex.solve(Limits { iterations, ..Limits::default() });
+        let Some(outcome) = simplex.outcome() else { return };
+        match outcome {
             Outcome::Optimal(solution) => {
                 view.bound = Some(self.user(relaxation.internal(solution.objective)));
-                view.checked_bound = relaxation.prove_at(&view.path, &solution.duals);
+                let cheap = relaxation.prove_at(&view.path, &solution.duals);
+                let (proved, exact) = relaxation.certified(&view.path, &simplex.basis(), EYE);
+                (view.checked_bound, view.exact) = (self.better(cheap, proved), exact);
                 let direction = direction(&self.model);
                 view.reduced_costs =
                     solution.reduced_costs.iter().map(|d| direction * d + 0.0).collect();

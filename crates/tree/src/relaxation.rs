@@ -13,9 +13,10 @@ use lp::{Basis, Col, NewRow, Problem, ProblemError, Simplex};
 use model::{
     ColumnId, FamilyState, LabelId, Model, Number, Row, RowId, Sense, SubsetFamilyId, nearest_f64,
 };
-use proof::{ExactRows, Residual};
+use proof::{Budget, ExactRows, Residual, Wish};
 
 use crate::event::{Branch, Side};
+use crate::proving::Proving;
 
 /// Where a row of the relaxation comes from.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -176,6 +177,20 @@ impl Relaxation {
     /// The bound that multipliers prove on the node at the end of `path`.
     pub(crate) fn prove_at(&self, path: &[Branch], duals: &[f64]) -> Option<Number> {
         proof::bound(&self.exact, &self.bounds_at(path), duals)
+    }
+
+    /// The bound that a basis proves on the node at the end of `path`, and whether it is the
+    /// optimum: as far as the budget goes, without another solve where the basis is not optimal.
+    pub(crate) fn certified(
+        &self,
+        path: &[Branch],
+        basis: &Basis,
+        budget: Budget,
+    ) -> (Option<Number>, bool) {
+        let wish = Wish::Optimum(None);
+        let mut proving = Proving::new(self.bounds_at(path), basis.clone(), wish, budget);
+        while !proving.advance(&self.exact, |_| None, budget.ticks) {}
+        (proving.certifier.bound(&self.exact), proving.certifier.is_exact())
     }
 
     /// The exact bounds of the node at the end of `path`. `O(columns)`.

@@ -145,15 +145,8 @@ mod tests {
             status: Status::Optimal,
             bound: Some(bound),
             checked: true,
-            checked_bound: None,
-            second_opinion: None,
             iterations: 1,
-            fractional: 0,
-            rounds: 0,
-            added: 0,
-            added_by_family: Vec::new(),
-            ray: Vec::new(),
-            stopped: None,
+            ..RootReport::default()
         }
     }
 

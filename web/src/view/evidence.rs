@@ -1,6 +1,8 @@
 //! The rivals side by side in a table, with what the figures mean.
 
+use record::results::Proof;
 use report::number::count;
+use report::proof;
 use yew::prelude::*;
 
 use crate::state::board::Board;
@@ -36,7 +38,8 @@ pub(crate) fn Evidence(props: &EvidenceProps) -> Html {
             <Results document={document.clone()} board={board.clone()} />
             <p class="prose">
                 { "Gap is |incumbent − bound| / |incumbent|, with the best value known on this page as incumbent. \
-                   A bound is shown as checked only where exact arithmetic has confirmed it. \
+                   A bound is called checked where exact arithmetic has proved that it is the optimum of the relaxation; \
+                   checked to within an amount where what is proved is a bound that far from the figure. \
                    Node counts with + are of a search that is not finished." }
             </p>
             <p class="prose">
@@ -55,9 +58,10 @@ fn row(document: &Document, board: &Board, place: usize, slot: &Slot, best: Opti
     let open = if lane.nodes() > 0 && !is_over(&lane) { "+" } else { "" };
     let relaxation = document.is_relaxation(&slot.rival);
     let checked = match &lane.root {
-        Some(root) if root.checked => "yes",
-        Some(_) => "no",
-        None => "–",
+        Some(root) if root.proof == Proof::Exact => "yes".to_owned(),
+        Some(root) if root.proof == Proof::None => "no".to_owned(),
+        Some(root) => proof::mark(root.proof, root.checked_within),
+        None => "–".to_owned(),
     };
     html! {
         <tr key={slot.id.0} class={format!("hue-{}", place % HUES)}>

@@ -3,8 +3,10 @@
 
 use record::event::{Branching, NodeState};
 use record::message::{NodeDetail, RivalReport, ViolatedSubset};
+use record::results::Proof;
 use record::scenario::{Act, ActKind};
 use report::number::{fixed, full, of, short};
+use report::proof;
 use wasm_bindgen::JsCast;
 use web_sys::HtmlElement;
 use yew::prelude::*;
@@ -218,14 +220,15 @@ fn sentence(detail: &NodeDetail) -> String {
 
 fn bound(detail: &NodeDetail) -> Html {
     let Some(bound) = detail.bound else { return Html::default() };
-    let checked = detail.checked_bound.as_ref().map_or_else(
-        || "not checked in exact arithmetic".to_owned(),
-        |exact| format!("checked exactly: {exact}"),
-    );
+    let checked = match (detail.proof, &detail.checked_bound) {
+        (Proof::Exact, Some(exact)) => format!("checked exactly: {exact}"),
+        _ => proof::mark(detail.proof, detail.checked_within),
+    };
+    let meaning = proof::meaning(detail.proof, detail.checked_bound.as_deref());
     html! {
         <p class="small">
             { "Bound " }<b><data value={bound.to_string()} title={full(bound)} data-testid="node-bound">{ short(bound) }</data></b>
-            { ", " }<span class="exact" data-testid="node-checked">{ checked }</span>
+            { ", " }<span class="exact" data-testid="node-checked" title={meaning}>{ checked }</span>
         </p>
     }
 }

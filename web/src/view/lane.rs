@@ -7,6 +7,7 @@ use record::results::ErrorReport;
 use record::scenario::{InstanceText, Rival, Run};
 use report::axis::Axis;
 use report::number::{count, of};
+use report::proof;
 use yew::prelude::*;
 
 use crate::state::board::{BoardAction, Selection};
@@ -151,14 +152,14 @@ fn size(rival: &RivalReport) -> String {
 fn figures(props: &LaneProps) -> Html {
     let lane = &props.lane;
     let Some(root) = &lane.root else { return Html::default() };
-    let mark = if root.checked { "checked" } else { "not checked" };
-    let exact = root.checked_bound.clone().map(|exact| format!("exactly {exact}"));
+    let mark = proof::mark(root.proof, root.checked_within);
+    let meaning = proof::meaning(root.proof, root.checked_bound.as_deref());
     html! {
         <dl class="figures">
             <div>
                 <dt>{ "root bound" }</dt>
                 <dd><span data-testid="root-bound">{ figure(root.bound) }</span>
-                <small class="soft" data-testid="checked" title={exact}>{ mark }</small></dd>
+                <small class="soft" data-testid="checked" title={meaning}>{ mark }</small></dd>
             </div>
             <div>
                 <dt>{ "root gap" }</dt>

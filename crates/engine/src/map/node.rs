@@ -4,6 +4,7 @@ use model::{ColumnId, Model};
 use record::message::{ColumnValue, Cycle, NodeDetail, ViolatedSubset};
 
 use super::event::{branch, node_state, number};
+use super::root::proved;
 use super::{Drawings, column_words, finite, tidy};
 
 /// Values of less are not listed.
@@ -14,12 +15,15 @@ const INTEGRALITY: f64 = 1e-6;
 
 /// The node as it is shown: values that are not 0, drawings, violated sets.
 pub(crate) fn node_detail(model: &Model, drawings: &Drawings, view: &tree::NodeView) -> NodeDetail {
+    let (proof, checked_within) = proved(view.bound, view.checked_bound.as_ref(), view.exact);
     NodeDetail {
         node: number(view.node),
         state: node_state(view.state),
         depth: view.depth,
         bound: view.bound.and_then(finite),
         checked_bound: view.checked_bound.as_ref().map(ToString::to_string),
+        proof,
+        checked_within,
         path: view.path.iter().map(branch).collect(),
         values: values(model, view),
         drawings: drawings.of(model, &view.x),

@@ -85,8 +85,15 @@ fn of_root(result: &RivalResult, root: &RootReport) -> String {
         .map(|family| (&family.name, family.state, family.rows, &family.decades))
         .collect();
     let size = (result.rows, result.columns, result.integer_columns, result.nonzeros);
-    let root = RootReport { second_opinion: None, stopped: None, ..root.clone() };
-    hashed(&(result.maximise, size, families, root))
+    hashed(&(result.maximise, size, families, fields(root)))
+}
+
+/// The fields that count, in the order in which links have them: links made before a field was
+/// added still say "same".
+fn fields(root: &RootReport) -> impl serde::Serialize + '_ {
+    let bound = (root.status, root.bound, root.checked, &root.checked_bound, None::<f64>);
+    let work = (root.iterations, root.fractional, root.rounds, root.added, &root.added_by_family);
+    (bound, work, &root.ray, None::<&str>)
 }
 
 fn of_search(search: &SearchReport) -> String {
@@ -100,21 +107,16 @@ fn hashed(value: &impl serde::Serialize) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::results::Proof;
 
     fn root(bound: f64) -> RootReport {
         RootReport {
             status: Status::Optimal,
             bound: Some(bound),
             checked: true,
-            checked_bound: None,
-            second_opinion: None,
             iterations: 7,
             fractional: 2,
-            rounds: 0,
-            added: 0,
-            added_by_family: Vec::new(),
-            ray: Vec::new(),
-            stopped: None,
+            ..RootReport::default()
         }
     }
 
@@ -152,6 +154,17 @@ mod tests {
         assert_eq!(compare(&digest, 1, &other), Comparison::Unknown);
         assert_eq!(compare(&digest, 2, &other), Comparison::Unknown);
         assert_eq!(super::digest(&[RivalResult::default()]), None);
+    }
+
+    /// A link of the first version, which knew no field for how a bound was proved.
+    #[test]
+    fn links_made_before_say_the_same() {
+        assert_eq!(digest(&[result(5.0, None)]).unwrap(), "4facb69c8e6761bc");
+        let mut proved = result(5.0, None);
+        if let Some(root) = &mut proved.root {
+            (root.proof, root.checked_within) = (Proof::Exact, Some(0.5));
+        }
+        assert_eq!(digest(&[proved]), digest(&[result(5.0, None)]));
     }
 
     #[test]

@@ -4,7 +4,7 @@ use super::*;
 use crate::event::{Event, NodeNumber};
 use crate::handover::{Form, Written};
 use crate::message::{Acted, CheckReport, LaneJob, Reply, RunNumber};
-use crate::results::{ErrorReport, RootReport, SearchReport, SolutionEntry, Status};
+use crate::results::{ErrorReport, Proof, RootReport, SearchReport, SolutionEntry, Status};
 use crate::scenario::{Act, ActKind, InstanceText, Rival, Run};
 use crate::typeset::{Element, Tag, Typeset, TypesetRow};
 
@@ -14,6 +14,8 @@ fn root() -> RootReport {
         bound: Some(151.2),
         checked: true,
         checked_bound: Some("756/5".to_owned()),
+        proof: Proof::Exact,
+        checked_within: None,
         second_opinion: None,
         iterations: 120,
         fractional: 22,

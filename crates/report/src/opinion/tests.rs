@@ -51,6 +51,17 @@ fn a_stronger_value_is_not_refuted_by_a_bound() {
     assert_eq!(verdict(&solved(141.0), false, &Opinion::Infeasible), Verdict::Undecided);
 }
 
+// A point of the proved value rules out every better one.
+#[test]
+fn a_proved_optimum_refutes_every_other_value() {
+    let root = RootReport { proof: Proof::Exact, ..solved(141.0) };
+    for other in [Opinion::Optimal(145.0), Opinion::Optimal(137.0), Opinion::Infeasible] {
+        assert_eq!(verdict(&root, false, &other), Verdict::Refuted, "{other:?}");
+    }
+    let within = RootReport { proof: Proof::Within, ..solved(141.0) };
+    assert_eq!(verdict(&within, false, &Opinion::Optimal(145.0)), Verdict::Undecided);
+}
+
 #[test]
 fn what_is_not_checked_decides_nothing() {
     let root = RootReport { checked: false, ..solved(141.137) };

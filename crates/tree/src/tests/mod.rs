@@ -6,6 +6,7 @@ mod conflict;
 mod cycles;
 mod endings;
 mod enumeration;
+mod eye;
 mod inspection;
 mod jeroslow;
 mod slices;

@@ -37,4 +37,4 @@ pub use labels::Labels;
 pub use model::{Column, Family, FamilyState, Model, Row, Sense, Variable};
 pub use number::{Number, Numbers, nearest_f64};
 pub use statistics::{FamilyStatistics, Statistics};
-pub use subset::{Relation, Scope, SubsetCondition, SubsetFamily, SubsetTerm};
+pub use subset::{Relation, RoundedUp, Scope, SubsetCondition, SubsetFamily, SubsetTerm};

@@ -7,7 +7,8 @@
 //! ```
 //!
 //! so `x(A(S)) ≤ |S| − 1` has a term of scope [`Scope::Inside`] for each arc, weight −1
-//! for each element, constant +1 and relation ≤.
+//! for each element, constant +1 and relation ≤. A rounded sum of weights, as in the capacity
+//! cuts `x(δ(S)) ≥ 2⌈d(S)/Q⌉`, stands beside it as [`RoundedUp`].
 
 use std::collections::BTreeSet;
 
@@ -124,6 +125,18 @@ impl SubsetCondition {
     }
 }
 
+/// What a rounded sum of weights adds to the member for `S`: `factor · ⌈Σ_{i∈S} w_i + constant⌉`.
+/// `⌊a⌋` is `−⌈−a⌉`.
+#[derive(Debug, Clone, PartialEq)]
+pub struct RoundedUp {
+    /// What the rounded sum is multiplied by.
+    pub factor: Number,
+    /// `w_i` for each element of the ground set, in its order.
+    pub weights: Vec<Number>,
+    /// What stands in every sum.
+    pub constant: Number,
+}
+
 /// A family over subsets, for one tuple of its outer index.
 #[derive(Debug, Clone, PartialEq)]
 pub struct SubsetFamily {
@@ -141,6 +154,8 @@ pub struct SubsetFamily {
     pub weights: Vec<Number>,
     /// What stands in every member.
     pub constant: Number,
+    /// A rounded sum of weights.
+    pub rounded: Option<RoundedUp>,
     /// How the member stands to 0.
     pub relation: Relation,
 }
@@ -160,17 +175,29 @@ impl SubsetFamily {
         for term in self.terms.iter().filter(|term| term.scope.holds(subset)) {
             entries.push((term.column, term.coefficient.clone()));
         }
-        let mut right = -self.constant.clone();
-        for (element, weight) in self.ground.iter().zip(&self.weights) {
-            if subset.contains(element) {
-                right -= weight;
-            }
-        }
+        let inside: Vec<bool> = self.ground.iter().map(|i| subset.contains(i)).collect();
+        let right = self.right_side(&inside);
         let (lower, upper) = match self.relation {
             Relation::AtMost => (None, Some(right)),
             Relation::AtLeast => (Some(right), None),
             Relation::Equal => (Some(right.clone()), Some(right)),
         };
         Row { entries: crate::builder::merged(entries), lower, upper }
+    }
+
+    /// The right side of the member for the elements of the ground set that are `inside`.
+    /// `O(elements)` exact operations.
+    #[must_use]
+    pub fn right_side(&self, inside: &[bool]) -> Number {
+        let sum = |weights: &[Number]| {
+            let chosen = weights.iter().zip(inside).filter(|(_, inside)| **inside);
+            chosen.fold(Number::ZERO, |sum, (weight, _)| sum + weight)
+        };
+        let mut right = -(&self.constant + sum(&self.weights));
+        if let Some(rounded) = &self.rounded {
+            let whole = Number::from((&rounded.constant + sum(&rounded.weights)).ceil());
+            right -= &rounded.factor * whole;
+        }
+        right
     }
 }

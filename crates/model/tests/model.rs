@@ -52,6 +52,7 @@ fn round_trip() -> Model {
         terms: terms.collect(),
         weights: vec![-Number::ONE; 3],
         constant: Number::ONE,
+        rounded: None,
         relation: Relation::AtMost,
     };
     builder.subset_family(family).unwrap();

@@ -448,3 +448,16 @@ fn a_text_with_an_unread_line_is_not_bound() {
         "data.unsound"
     );
 }
+
+#[test]
+fn rounded_sums_over_the_subset() {
+    let data = "  q_i ∀ i ∈ V\n  Q\n";
+    let (_, members) =
+        subsets(data, "  x(δ(S)) ≥ 2 ⌈Σ_{i ∈ S} q_i / Q⌉ ∀ S ⊆ V : |S| = 3 (rounded)");
+    // Cedar, Dogwood and Elm carry 5 + 6 + 7 = 18 of 10 a vehicle: two vehicles, so four edges
+    assert!(members.iter().any(|row| row.ends_with("≥ 4")), "{members:?}");
+    assert!(members.iter().all(|row| row.ends_with("≥ 4") || row.ends_with("≥ 2")), "{members:?}");
+    let (_, floor) = subsets("", "  x(E(S)) ≤ ⌊|S| / 2⌋ ∀ S ⊆ V : |S| = 3 (rows)");
+    let (_, plain) = subsets("", "  x(E(S)) ≤ 1 ∀ S ⊆ V : |S| = 3 (rows)");
+    assert_eq!(floor, plain);
+}

@@ -6,6 +6,8 @@ use std::collections::BTreeMap;
 use dashu_int::{UBig, ops::Gcd};
 use model::{LabelId, Model, Number, Relation, Scope, SubsetFamily, nearest_f64};
 
+use crate::rounding::Rounding;
+
 /// When a term counts, by places in the ground set; scopes that never hold are left out.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(crate) enum Kind {
@@ -28,7 +30,7 @@ pub(crate) struct Term {
 }
 
 /// `scale · violation(S) = constant + Σ_{i∈S} weights_i + Σ_{terms that count} coefficient·x`
-/// (its absolute value, for an equation). The scale makes every number whole, and even.
+/// and the rounded sum (its absolute value, for an equation). The scale makes every number whole, and even.
 #[derive(Debug, Clone)]
 pub(crate) struct Compiled {
     pub(crate) size: usize,
@@ -37,6 +39,9 @@ pub(crate) struct Compiled {
     pub(crate) weights: Vec<f64>,
     pub(crate) terms: Vec<Term>,
     pub(crate) equation: bool,
+    pub(crate) rounding: Option<Rounding>,
+    /// Whether the numbers of the rounded sum fit into whole arithmetic.
+    pub(crate) readable: bool,
     /// Whether all scaled numbers are whole and small and all columns integer, so that sums at
     /// integer points are exact in floating point.
     pub(crate) whole: bool,
@@ -62,6 +67,8 @@ impl Compiled {
             Some(Term { place, column, coefficient, kind })
         });
         let terms = terms.collect();
+        let rounded = family.rounded.as_ref();
+        let rounding = rounded.and_then(|r| Rounding::new(r, scaled.value(&r.factor)));
         let mut compiled = Self {
             size: family.ground.len(),
             scale: nearest_f64(&scale),
@@ -69,6 +76,8 @@ impl Compiled {
             weights: family.weights.iter().map(|weight| scaled.value(weight)).collect(),
             terms,
             equation: family.relation == Relation::Equal,
+            readable: rounded.is_none() || rounding.is_some(),
+            rounding,
             whole: false,
             integer: model.columns().iter().map(|column| column.integer).collect(),
         };
@@ -80,6 +89,7 @@ impl Compiled {
     fn is_whole(&self) -> bool {
         let small = |value: f64| value.abs() <= LARGEST_WHOLE;
         small(self.constant)
+            && self.rounding.as_ref().is_none_or(|rounding| small(rounding.size()))
             && self.weights.iter().all(|&weight| small(weight))
             && self.terms.iter().all(|t| small(t.coefficient) && self.integer[t.column])
     }
@@ -93,7 +103,29 @@ impl Compiled {
         for term in self.terms.iter().filter(|term| term.kind.holds(set)) {
             sum += term.coefficient * x[term.column];
         }
+        sum += self.rounding.as_ref().map_or(0.0, |rounding| rounding.value(set));
         if self.equation { sum.abs() } else { sum }
+    }
+
+    /// Whether at `x` the violations of all sets but for the rounded sum are multiples of its
+    /// factor, so that rounding makes no member violated that was not. `O(terms)`.
+    pub(crate) fn is_granular(&self, x: &[f64]) -> bool {
+        let Some(rounding) = &self.rounding else { return true };
+        let step = rounding.step();
+        let mut crossing = vec![0.0; self.size];
+        let mut whole = is_multiple(self.constant, step)
+            && self.weights.iter().all(|&weight| is_multiple(weight, step));
+        for term in &self.terms {
+            let value = term.coefficient * x[term.column];
+            if let Kind::Crossing(i, j) = term.kind {
+                crossing[i] += value;
+                crossing[j] += value;
+                whole &= is_multiple(2.0 * value, step);
+            } else {
+                whole &= is_multiple(value, step);
+            }
+        }
+        whole && crossing.iter().all(|&value| is_multiple(value, step))
     }
 
     /// `x` with its integer columns rounded.
@@ -106,6 +138,11 @@ impl Compiled {
     pub(crate) fn is_integer(&self, column: usize) -> bool {
         self.integer[column]
     }
+}
+
+/// Whether a whole number is a multiple of another.
+fn is_multiple(value: f64, step: f64) -> bool {
+    value % step == 0.0
 }
 
 /// Exact numbers times a factor as floats; the last one is kept, for most are the same.
@@ -163,12 +200,21 @@ fn resolved(scope: Scope, places: &BTreeMap<LabelId, usize>) -> Option<Kind> {
 fn common_denominator(family: &SubsetFamily) -> UBig {
     let coefficients = family.terms.iter().map(|term| &term.coefficient);
     let numbers = coefficients.chain(&family.weights).chain([&family.constant]);
-    numbers.fold(UBig::ONE, |multiple, number| {
-        let bottom = number.denominator();
-        if bottom.is_one() {
-            return multiple;
-        }
-        let divisor = (&multiple).gcd(bottom);
-        multiple / divisor * bottom
-    })
+    let rounded = family.rounded.iter().flat_map(|rounded| {
+        let sums = rounded.weights.iter().chain([&rounded.constant]);
+        let sums = sums.map(|number| number * &rounded.factor);
+        sums.chain([rounded.factor.clone()]).collect::<Vec<_>>()
+    });
+    let plain = numbers.fold(UBig::ONE, common);
+    rounded.fold(plain, |multiple, number| common(multiple, &number))
+}
+
+/// The least common multiple with a denominator.
+fn common(multiple: UBig, number: &Number) -> UBig {
+    let bottom = number.denominator();
+    if bottom.is_one() {
+        return multiple;
+    }
+    let divisor = (&multiple).gcd(bottom);
+    multiple / divisor * bottom
 }

@@ -4,6 +4,9 @@ use std::collections::{BTreeMap, BTreeSet};
 
 use model::{LabelId, Number, SubsetCondition, SubsetFamily};
 
+/// Forced elements up to which the number of cuts counts as bounded.
+pub(crate) const MOST_LEVELS: usize = 3;
+
 /// What is decided about an element.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(crate) enum Fixed {
@@ -153,13 +156,26 @@ impl Conditions {
     }
 
     /// How many elements one cut after another must force, at most, until every condition
-    /// holds by itself; `None` when there is no such number.
-    pub(crate) fn levels(&self) -> Option<usize> {
+    /// holds by itself; `None` when there is no such number. `handled`: the one condition of
+    /// another kind is met by each set that is found.
+    pub(crate) fn levels(&self, handled: bool) -> Option<usize> {
         let held = self.fixed.iter().filter(|f| **f == Fixed::In).count();
         let free = self.fixed.iter().filter(|f| **f == Fixed::Free).count();
         let below = self.least.saturating_sub(held);
         let above = (held + free).saturating_sub(self.most);
-        self.others.is_empty().then_some(below + above + self.meets.len() + self.lacks.len())
+        let parity = matches!(self.others[..], [SubsetCondition::Odd(_)]);
+        let (below, above) = if handled && parity {
+            (below.saturating_sub(1), above.saturating_sub(1))
+        } else {
+            (below, above)
+        };
+        (self.others.is_empty() || handled)
+            .then_some(below + above + self.meets.len() + self.lacks.len())
+    }
+
+    /// Whether few forced elements make every condition hold.
+    pub(crate) fn is_bounded(&self) -> bool {
+        self.levels(false).is_some_and(|levels| levels <= MOST_LEVELS)
     }
 
     /// The parts of what `fixed` leaves open in which a set other than `set`, which fails,

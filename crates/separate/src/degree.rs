@@ -23,6 +23,9 @@ struct Node {
 /// Whether the rows that are in make every set and its complement equally violated.
 /// `O(non-zeros · log)` exact operations.
 pub(crate) fn balances(model: &Model, family: &SubsetFamily) -> bool {
+    if family.rounded.is_some() {
+        return false;
+    }
     let mut nodes: BTreeMap<_, Node> =
         family.ground.iter().map(|&label| (label, Node::default())).collect();
     for term in &family.terms {

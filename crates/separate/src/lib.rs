@@ -9,23 +9,31 @@
 //!
 //! so that its maximum is a minimum cut (Picard, Ratliff 1975), whatever the weights. The
 //! conditions on S are met by branching on the elements that must be in or out, which takes
-//! one cut for each forced element; other shapes are listed where they have no more than
-//! 2^12 members.
+//! one cut for each forced element. Odd sets take a minimum odd cut, covers a knapsack, cliques
+//! branch and bound; capacity cuts with a rounded demand are found by that cut without the
+//! rounding and by greedy growth, which is said to be heuristic. Other shapes are listed where
+//! they have no more than 2^12 members.
 //!
 //! | item | use it for |
 //! |---|---|
 //! | [`Separator`] | one family over subsets: violated members at a point, membership |
 //! | [`RowSeparator`] | an ordinary family on demand: violated written rows |
 
+mod clique;
 mod compiled;
 mod components;
 mod conditions;
+mod cover;
+mod cut_tree;
 mod degree;
 mod flow;
+mod growth;
 mod list;
 mod member;
 mod method;
+mod parity;
 mod quadratic;
+mod rounding;
 mod rows;
 mod search;
 mod separator;

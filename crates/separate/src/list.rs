@@ -132,6 +132,7 @@ mod tests {
             terms: Vec::new(),
             weights: vec![Number::ZERO; size as usize],
             constant: Number::ZERO,
+            rounded: None,
             relation: Relation::AtMost,
         }
     }

@@ -14,8 +14,7 @@ pub(crate) fn row(family: &SubsetFamily, compiled: &Compiled, set: &[bool]) -> R
         let written = &family.terms[term.place];
         *sums.entry(written.column).or_insert(Number::ZERO) += &written.coefficient;
     }
-    let weights = family.weights.iter().zip(set).filter(|(_, inside)| **inside);
-    let right = weights.fold(-family.constant.clone(), |right, (weight, _)| right - weight);
+    let right = family.right_side(set);
     let (lower, upper) = match family.relation {
         Relation::AtMost => (None, Some(right)),
         Relation::AtLeast => (Some(right), None),

@@ -1,9 +1,14 @@
 //! Which method separates a family: recognition of its shape.
 
-use model::{Model, SubsetFamily};
+use std::rc::Rc;
+
+use model::{Model, SubsetCondition, SubsetFamily};
+
+use crate::clique::{Cliques, MOST_NODES};
 
 use crate::compiled::{Compiled, Kind};
-use crate::conditions::{Conditions, Fixed};
+use crate::conditions::{Conditions, Fixed, MOST_LEVELS};
+use crate::cover::Cover;
 use crate::{degree, list};
 
 /// How the bound of a family is labelled.
@@ -20,18 +25,32 @@ pub enum Exactness {
 /// The method of a separator.
 #[derive(Debug, Clone)]
 pub(crate) enum Method {
-    /// Minimum cuts, at most `limit` a round (`None`: as many as it takes).
-    Cut { limit: Option<u32> },
+    /// Minimum cuts (or what the oracle finds), at most `limit` a round (`None`: as many as it
+    /// takes).
+    Cut { limit: Option<u32>, oracle: Oracle },
     /// All members, by places.
     List(Vec<Vec<usize>>),
     /// None is known.
     None,
 }
 
+/// What finds the most violated of the sets that agree with what is fixed.
+#[derive(Debug, Clone)]
+pub(crate) enum Oracle {
+    /// A minimum cut; of all sets.
+    Cut,
+    /// Of the sets with an odd (`true`) or even number of elements.
+    Parity(bool),
+    /// Of the sets over a weight, for terms that split by element.
+    Cover(Rc<Cover>),
+    /// Of the cliques, for terms that split by element.
+    Clique(Rc<Cliques>),
+}
+
+/// Cuts a round for members with a rounded sum.
+const ROUNDED_LIMIT: u32 = 100;
 /// Cuts a round where the conditions could take very many.
 const CUT_LIMIT: u32 = 2_000;
-/// Forced elements up to which the number of cuts counts as bounded.
-const MOST_LEVELS: usize = 3;
 
 /// A method and what it is called.
 pub(crate) struct Choice {
@@ -49,12 +68,20 @@ pub(crate) fn choose(
 ) -> Choice {
     let cut = is_cut(model, compiled);
     let balanced = cut && degree::balances(model, family);
-    let bounded = conditions.levels().is_some_and(|levels| levels <= MOST_LEVELS);
-    if cut && (bounded || (balanced && halves(conditions))) {
+    let oracle = oracle(family, compiled, conditions);
+    let handled = !matches!(oracle, Oracle::Cut);
+    let bounded = conditions.levels(handled).is_some_and(|levels| levels <= MOST_LEVELS);
+    let small = !matches!(&oracle, Oracle::Cover(cover) if !cover.is_small());
+    let plain = compiled.rounding.is_none();
+    if cut && plain && small && (bounded || (balanced && halves(conditions))) {
         return Choice {
-            method: Method::Cut { limit: None },
+            description: if handled {
+                exactly(&oracle)
+            } else {
+                named(model, family, (compiled, conditions), balanced)
+            },
+            method: Method::Cut { limit: None, oracle },
             exactness: Some(Exactness::Exact),
-            description: named(model, family, (compiled, conditions), balanced),
         };
     }
     if let Some(sets) = list::members(family, conditions) {
@@ -63,14 +90,61 @@ pub(crate) fn choose(
         return Choice { method: Method::List(sets), exactness, description };
     }
     if cut {
-        let description = format!(
-            "heuristic: up to {CUT_LIMIT} minimum cuts a round, for these sizes or parities"
-        );
-        let method = Method::Cut { limit: Some(CUT_LIMIT) };
+        let description = roughly(&oracle, compiled);
+        let limit = if plain { CUT_LIMIT } else { ROUNDED_LIMIT };
+        let method = Method::Cut { limit: Some(limit), oracle };
         return Choice { method, exactness: Some(Exactness::Heuristic), description };
     }
     let description = "no method: the shape is not recognised and there are over 4,096 members";
     Choice { method: Method::None, exactness: None, description: description.to_owned() }
+}
+
+/// The oracle that meets the one condition of another kind; plain cuts where there is none.
+fn oracle(family: &SubsetFamily, compiled: &Compiled, conditions: &Conditions) -> Oracle {
+    let pair =
+        |kind: Kind| matches!(kind, Kind::Inside(..) | Kind::Leaving(..) | Kind::Crossing(..));
+    let split = !compiled.terms.iter().any(|term| pair(term.kind));
+    let plain = compiled.rounding.is_none();
+    match &conditions.others[..] {
+        [SubsetCondition::Odd(odd)] if plain => Oracle::Parity(*odd),
+        [SubsetCondition::WeightOver { weights, over }] if split && plain => {
+            Cover::new(&family.ground, weights, over)
+                .map_or(Oracle::Cut, |cover| Oracle::Cover(Rc::new(cover)))
+        }
+        [SubsetCondition::Clique(edges)] if split && plain => {
+            Oracle::Clique(Rc::new(Cliques::new(&family.ground, edges)))
+        }
+        _ => Oracle::Cut,
+    }
+}
+
+/// The description of an exact oracle.
+fn exactly(oracle: &Oracle) -> String {
+    match oracle {
+        Oracle::Cut => String::new(),
+        Oracle::Parity(true) => "exact minimum odd cut on a cut tree".to_owned(),
+        Oracle::Parity(false) => "exact minimum even cut".to_owned(),
+        Oracle::Cover(_) => "exact knapsack by dynamic programming".to_owned(),
+        Oracle::Clique(_) => {
+            format!("greedy cliques, then exact branch and bound up to {MOST_NODES} nodes")
+        }
+    }
+}
+
+/// The description of a method that may miss a violated member.
+fn roughly(oracle: &Oracle, compiled: &Compiled) -> String {
+    match oracle {
+        Oracle::Cover(_) => {
+            "heuristic: greedy knapsack, for exact states would be over 10^6".to_owned()
+        }
+        _ if compiled.rounding.is_some() => format!(
+            "heuristic: greedy growth and up to {ROUNDED_LIMIT} minimum cuts of the form without \
+             rounding"
+        ),
+        _ => format!(
+            "heuristic: up to {CUT_LIMIT} minimum cuts a round, for these sizes or parities"
+        ),
+    }
 }
 
 /// Whether the violation is maximised by a minimum cut: terms inside only help, terms
@@ -92,7 +166,7 @@ fn is_cut(model: &Model, compiled: &Compiled) -> bool {
         Kind::Inside(..) => fits(term.coefficient, term.column),
         Kind::Leaving(..) | Kind::Crossing(..) => fits(-term.coefficient, term.column),
     };
-    !compiled.equation && compiled.terms.iter().all(term_fits)
+    !compiled.equation && compiled.readable && compiled.terms.iter().all(term_fits)
 }
 
 /// Whether of each set and its complement (single elements apart) one is admitted, so that

@@ -12,6 +12,7 @@ use std::collections::BTreeMap;
 use crate::compiled::{Compiled, Kind};
 use crate::conditions::Fixed;
 use crate::flow::Network;
+use crate::rounding::Rounding;
 
 /// The function at one point.
 #[derive(Debug, Clone)]
@@ -21,14 +22,39 @@ pub(crate) struct Quadratic {
     /// Pairs i < j with a_ij and a_ji, by rising pair.
     pub(crate) pairs: Vec<(usize, usize, f64, f64)>,
     tolerance: f64,
+    /// What is rounded; the function holds it without the rounding.
+    rounding: Option<Rounding>,
 }
 
-/// The smallest and the largest set at which the minimum is attained, and the work done.
+/// What one search for the most violated set gave.
+#[derive(Debug, Clone)]
+pub(crate) struct Answer {
+    /// `None`: no set meets the condition and is violated.
+    pub(crate) minimum: Option<Minimum>,
+    pub(crate) ticks: u64,
+    /// Whether a more violated set may have been missed.
+    pub(crate) cut_short: bool,
+}
+
+impl Answer {
+    /// An exact answer.
+    pub(crate) fn of(minimum: Minimum, work: usize) -> Self {
+        let ticks = u64::try_from(work).unwrap_or(u64::MAX);
+        Self { minimum: Some(minimum), ticks, cut_short: false }
+    }
+
+    /// There is none.
+    pub(crate) fn none(work: usize) -> Self {
+        let ticks = u64::try_from(work).unwrap_or(u64::MAX);
+        Self { minimum: None, ticks, cut_short: false }
+    }
+}
+
+/// The smallest and the largest set at which the minimum is attained.
 #[derive(Debug, Clone)]
 pub(crate) struct Minimum {
     pub(crate) smallest: Vec<bool>,
     pub(crate) largest: Vec<bool>,
-    pub(crate) ticks: u64,
 }
 
 impl Quadratic {
@@ -67,10 +93,46 @@ impl Quadratic {
             }
         }
         let pairs = pairs.into_iter().map(|((i, j), (a, b))| (i, j, a, b)).collect();
-        Self { constant, linear, pairs, tolerance }
+        if let Some(rounding) = &compiled.rounding {
+            let (always, weights) = rounding.linear();
+            constant -= always;
+            linear.iter_mut().zip(weights).for_each(|(sum, weight)| *sum -= weight);
+        }
+        Self { constant, linear, pairs, tolerance, rounding: compiled.rounding.clone() }
     }
 
-    /// `scale·violation(set)`. `O(n + pairs)`.
+    /// Takes rounding for nothing: right at points that [`Compiled::is_granular`] names.
+    pub(crate) fn without_rounding(mut self) -> Self {
+        self.rounding = None;
+        self
+    }
+
+    /// Residual capacities up to this count as none.
+    pub(crate) fn tolerance(&self) -> f64 {
+        self.tolerance
+    }
+
+    /// Whether a sum is rounded.
+    pub(crate) fn is_rounded(&self) -> bool {
+        self.rounding.is_some()
+    }
+
+    /// The most that rounding adds to a violation.
+    pub(crate) fn most_gain(&self) -> f64 {
+        self.rounding.as_ref().map_or(0.0, Rounding::most_gain)
+    }
+
+    /// The violation with the rounding. `O(n + pairs)`.
+    pub(crate) fn rounded_violation(&self, set: &[bool]) -> f64 {
+        self.violation(set) + self.gain(set)
+    }
+
+    /// What rounding adds to the violation of a set. `O(n)`.
+    pub(crate) fn gain(&self, set: &[bool]) -> f64 {
+        self.rounding.as_ref().map_or(0.0, |rounding| rounding.gain(set))
+    }
+
+    /// `scale·violation(set)` but for rounding. `O(n + pairs)`.
     pub(crate) fn violation(&self, set: &[bool]) -> f64 {
         let mut sum = self.constant;
         for (value, _) in self.linear.iter().zip(set).filter(|(_, inside)| **inside) {
@@ -87,7 +149,7 @@ impl Quadratic {
     }
 
     /// The sets of largest violation that agree with `fixed`: one minimum cut.
-    pub(crate) fn minimise(&self, fixed: &[Fixed]) -> Minimum {
+    pub(crate) fn minimise(&self, fixed: &[Fixed]) -> (Minimum, u64) {
         let nodes = fixed.len();
         let (source, sink) = (nodes, nodes + 1);
         let place = |i: usize| match fixed[i] {
@@ -117,11 +179,12 @@ impl Quadratic {
             Fixed::In => true,
             Fixed::Out => false,
         };
-        Minimum {
+        let minimum = Minimum {
             smallest: (0..nodes).map(|i| side(i, reached[i])).collect(),
             largest: (0..nodes).map(|i| side(i, !reaching[i])).collect(),
-            ticks: network.ticks + u64::try_from(nodes + self.pairs.len()).unwrap_or(u64::MAX),
-        }
+        };
+        let size = u64::try_from(nodes + self.pairs.len()).unwrap_or(u64::MAX);
+        (minimum, network.ticks + size)
     }
 
     /// Whether a set and its complement are equally violated, up to `tolerance` a node: no

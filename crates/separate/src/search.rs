@@ -1,19 +1,26 @@
-//! The most violated sets that meet the conditions: one minimum cut after another.
+//! The most violated sets that meet the conditions: one minimum cut after another, or, where one
+//! condition asks for it, one minimum odd cut, knapsack or clique after another.
 //!
 //! A cut over what is left open gives the most violated sets there. When one of them meets
 //! the conditions it is recorded; when the violation is too small the part is done; else the
 //! part is split into parts in which the failing condition is forced a little more, as in the
 //! ranking method of Lawler 1972. For 1 ≤ |S| ≤ n − 1 that takes about 2n cuts.
 //!
+//! Where the member holds a rounded sum, the cut is that of the weaker form without the rounding:
+//! a set that it finds may fail, and others are tried, up to the limit. Before that, sets grown
+//! from each element are tried.
+//!
 //! Where a set and its complement are equally violated only the sets that avoid the first
 //! element are searched, and what is recorded is the smaller side that is admitted.
 
 use std::collections::BTreeMap;
+use std::ops::Range;
 
 use crate::conditions::{Conditions, Failure, Fixed, Part};
-use crate::method::halves;
-use crate::quadratic::{Minimum, Quadratic};
-use crate::{components, tolerance};
+use crate::method::{Oracle, halves};
+use crate::parity::ParityMinimum;
+use crate::quadratic::{Answer, Minimum, Quadratic};
+use crate::{components, growth, tolerance};
 
 /// The most sets that a round keeps.
 const MOST_SETS: usize = 400;
@@ -45,6 +52,11 @@ struct Covered {
 pub(crate) struct Search {
     quadratic: Quadratic,
     rules: Rules,
+    oracle: Oracle,
+    /// The search for a set of one parity that is under way.
+    parity: Option<Box<ParityMinimum>>,
+    /// Elements that sets are still to be grown from.
+    seeds: Range<usize>,
     /// The conditions in force: those of the family, or, in balance, weaker ones.
     conditions: Conditions,
     balanced: bool,
@@ -58,9 +70,14 @@ pub(crate) struct Search {
 }
 
 impl Search {
-    /// Prepares a search and looks at the connected components; if they give violated sets
-    /// the search is finished with them.
-    pub(crate) fn new(quadratic: Quadratic, conditions: &Conditions, rules: Rules) -> Self {
+    /// Prepares a search and looks at the connected components (and at greedy cliques); if they
+    /// give violated sets the search is finished with them.
+    pub(crate) fn new(
+        quadratic: Quadratic,
+        conditions: &Conditions,
+        oracle: Oracle,
+        rules: Rules,
+    ) -> Self {
         let size = conditions.fixed.len();
         let balanced = can_halve(&quadratic, conditions, rules);
         let mut search = Self {
@@ -70,17 +87,20 @@ impl Search {
             open: Vec::new(),
             found: BTreeMap::new(),
             covered: vec![Covered::default(); size],
+            parity: None,
+            seeds: 0..if quadratic.is_rounded() { size } else { 0 },
+            oracle,
             cuts: 0,
             cut_short: false,
             quadratic,
         };
         if conditions.empty {
+            search.seeds = 0..0;
             return search;
         }
-        for set in components::candidates(&search.quadratic, conditions) {
-            search.record(&set, conditions);
-        }
+        search.try_cheap(conditions);
         if !search.found.is_empty() {
+            search.seeds = 0..0;
             return search;
         }
         let mut fixed = conditions.fixed.clone();
@@ -93,13 +113,32 @@ impl Search {
         search
     }
 
-    /// Whether nothing is left to do.
-    pub(crate) fn is_finished(&self) -> bool {
-        self.open.is_empty()
+    /// Records what costs no cut.
+    fn try_cheap(&mut self, conditions: &Conditions) {
+        if let Oracle::Clique(cliques) = self.oracle.clone() {
+            for set in cliques.greedy(&self.quadratic, &conditions.fixed) {
+                self.record(&set, conditions);
+            }
+            return;
+        }
+        for set in components::candidates(&self.quadratic, conditions) {
+            self.record(&set, conditions);
+        }
     }
 
-    /// One cut; the work done. `family` holds the family's own conditions.
+    /// Whether nothing is left to do.
+    pub(crate) fn is_finished(&self) -> bool {
+        self.open.is_empty() && self.parity.is_none() && self.seeds.is_empty()
+    }
+
+    /// One cut, or one set grown; the work done. `family` holds the family's own conditions.
     pub(crate) fn step(&mut self, family: &Conditions) -> u64 {
+        if let Some(parity) = self.parity.take() {
+            return self.step_parity(parity, family);
+        }
+        if let Some(seed) = self.seeds.next() {
+            return self.grow(seed, family);
+        }
         let Some(part) = self.open.pop() else { return 0 };
         if self.is_covered(&part) {
             return 1;
@@ -110,18 +149,80 @@ impl Search {
             return 1;
         }
         self.cuts += 1;
-        let minimum = self.quadratic.minimise(&part.fixed);
-        if self.quadratic.violation(&minimum.smallest) <= self.rules.threshold {
-            return minimum.ticks;
+        let threshold = self.rules.threshold;
+        let answer = match &self.oracle {
+            Oracle::Cut => {
+                let (minimum, ticks) = self.quadratic.minimise(&part.fixed);
+                Answer { minimum: Some(minimum), ticks, cut_short: false }
+            }
+            Oracle::Parity(odd) => {
+                let slightly = self.rules.balance;
+                let search = ParityMinimum::new(&self.quadratic, part.fixed, *odd, slightly);
+                self.parity = Some(Box::new(search));
+                return 1;
+            }
+            Oracle::Cover(cover) => cover.minimise(&self.quadratic, &part.fixed, threshold),
+            Oracle::Clique(cliques) => cliques.minimise(&self.quadratic, &part.fixed, threshold),
+        };
+        self.cut_short |= answer.cut_short;
+        if let Some(minimum) = answer.minimum {
+            self.judge(&minimum, &part.fixed, family);
         }
-        let recorded = self.take_both(&minimum, family);
+        answer.ticks
+    }
+
+    /// Records a minimum, or splits the part where it fails.
+    fn judge(&mut self, minimum: &Minimum, fixed: &[Fixed], family: &Conditions) {
+        let most = self.quadratic.violation(&minimum.smallest) + self.quadratic.most_gain();
+        if most <= self.rules.threshold {
+            return;
+        }
+        let recorded = self.take_both(minimum, family);
+        self.after(recorded, &minimum.smallest, fixed);
+    }
+
+    /// Ends the search when enough is found; splits the part when its set is of no use.
+    fn after(&mut self, recorded: bool, set: &[bool], fixed: &[Fixed]) {
         if recorded && (self.rules.first_only || self.found.len() >= MOST_SETS) {
             self.open.clear();
-        } else if let (false, Some(failure)) = (recorded, self.failure(&minimum.smallest)) {
-            let parts = self.conditions.parts(&part.fixed, &minimum.smallest, failure);
+        }
+        let rounded = self.quadratic.is_rounded().then_some(Failure::Other);
+        if let (false, Some(failure)) = (recorded, self.failure(set).or(rounded)) {
+            let parts = self.conditions.parts(fixed, set, failure);
             self.open.extend(parts.into_iter().rev());
         }
-        minimum.ticks
+    }
+
+    /// One flow of the search for a set of one parity; at its end what was found is recorded.
+    fn step_parity(&mut self, mut parity: Box<ParityMinimum>, family: &Conditions) -> u64 {
+        let ticks = parity.step(&self.quadratic, self.rules.threshold);
+        if !parity.is_finished() {
+            self.parity = Some(parity);
+            return ticks;
+        }
+        let mut sets = std::mem::take(&mut parity.sets);
+        sets.retain(|(violation, _)| *violation > self.rules.threshold);
+        sets.sort_by(|a, b| b.0.total_cmp(&a.0).then_with(|| a.1.cmp(&b.1)));
+        let mut recorded = false;
+        for (_, set) in &sets {
+            recorded |= self.failure(set).is_none() && self.record(set, family);
+        }
+        if let Some((_, set)) = sets.first() {
+            self.after(recorded, set, &parity.fixed);
+        }
+        ticks
+    }
+
+    /// Grows a set from one element; after the last, the search ends if it found any.
+    fn grow(&mut self, seed: usize, family: &Conditions) -> u64 {
+        let (sets, ticks) = growth::grown(&self.quadratic, &self.conditions, seed);
+        for set in sets {
+            self.record(&set, family);
+        }
+        if self.seeds.is_empty() && !self.found.is_empty() {
+            self.open.clear();
+        }
+        ticks
     }
 
     fn failure(&self, set: &[bool]) -> Option<Failure> {
@@ -133,9 +234,17 @@ impl Search {
     /// covered.
     fn take_both(&mut self, minimum: &Minimum, family: &Conditions) -> bool {
         let mut taken = Vec::new();
-        for set in [&minimum.smallest, &minimum.largest] {
+        let one = matches!(self.oracle, Oracle::Clique(_));
+        let mut sets = [&minimum.smallest, &minimum.largest];
+        if one {
+            sets.reverse();
+        }
+        for set in sets {
             if self.failure(set).is_none() && self.record(set, family) {
                 taken.push(set);
+                if one {
+                    break;
+                }
             }
         }
         let (Some(smallest), Some(largest)) = (taken.first(), taken.last()) else { return false };
@@ -149,7 +258,7 @@ impl Search {
     /// Records a set if it gives a member and is violated; in balance the smaller of it and
     /// its complement that does (its row has fewer entries), and not both.
     fn record(&mut self, set: &[bool], family: &Conditions) -> bool {
-        if self.quadratic.violation(set) <= self.rules.threshold {
+        if self.quadratic.rounded_violation(set) <= self.rules.threshold {
             return false;
         }
         let mut sides = vec![set.to_vec()];
@@ -159,7 +268,7 @@ impl Search {
         }
         let Some(side) = sides.into_iter().find(|side| family.admits(side)) else { return false };
         let places = (0..side.len()).filter(|&i| side[i]).collect();
-        self.found.insert(places, self.quadratic.violation(&side));
+        self.found.insert(places, self.quadratic.rounded_violation(&side));
         true
     }
 

@@ -6,9 +6,9 @@ use model::{LabelId, Model, Number, Row, SubsetFamily, SubsetFamilyId, nearest_f
 
 use crate::compiled::Compiled;
 use crate::conditions::Conditions;
-use crate::method::{Choice, Exactness, Method, choose};
+use crate::method::{Choice, Exactness, Method, Oracle, choose};
 use crate::quadratic::Quadratic;
-use crate::search::{Rules, Search, fractional};
+use crate::search::{Search, fractional};
 use crate::{member, tolerance};
 
 /// The most members that a round hands out.
@@ -101,7 +101,8 @@ impl Separator {
         &self.description
     }
 
-    /// How the bound of the family is labelled; `None` when there is no method.
+    /// How the bound of the family is labelled; `None` when there is no method. An exact method
+    /// with a limit (cliques) turns heuristic when a round that found nothing reached it.
     #[must_use]
     pub fn exactness(&self) -> Option<Exactness> {
         self.exactness
@@ -111,18 +112,19 @@ impl Separator {
     pub fn start(&mut self, x: &[f64]) {
         self.x = x.to_vec();
         self.work = match &self.method {
-            Method::Cut { limit } => {
+            Method::Cut { limit, oracle } => {
                 let rules = fractional(self.compiled.scale, *limit);
-                Work::Cuts(Box::new(self.search(x, rules)))
+                let quadratic = Quadratic::new(&self.compiled, x, rules.residual);
+                Work::Cuts(Box::new(Search::new(
+                    quadratic,
+                    &self.conditions,
+                    oracle.clone(),
+                    rules,
+                )))
             }
             Method::List(_) => Work::List(0, Vec::new()),
             Method::None => Work::Idle,
         };
-    }
-
-    fn search(&self, x: &[f64], rules: Rules) -> Search {
-        let quadratic = Quadratic::new(&self.compiled, x, rules.residual);
-        Search::new(quadratic, &self.conditions, rules)
     }
 
     /// Works until `ticks` arcs or terms have been looked at; a cut is never left halfway.
@@ -160,7 +162,10 @@ impl Separator {
     pub fn take(&mut self) -> Vec<Violated> {
         let sets: Vec<Vec<usize>> = match std::mem::replace(&mut self.work, Work::Idle) {
             Work::Idle => Vec::new(),
-            Work::Cuts(search) => ranked(search.found.into_iter().collect()),
+            Work::Cuts(search) => {
+                self.note(&search);
+                ranked(search.found.into_iter().collect())
+            }
             Work::List(_, found) => {
                 let Method::List(sets) = &self.method else { return Vec::new() };
                 let found = found.into_iter().filter_map(|(k, v)| Some((sets.get(k)?.clone(), v)));
@@ -174,6 +179,14 @@ impl Separator {
             b.violation.total_cmp(&a.violation).then_with(|| a.subset.cmp(&b.subset))
         });
         members
+    }
+
+    /// An exact method that was cut short is called heuristic from then on.
+    fn note(&mut self, search: &Search) {
+        if search.cut_short && search.found.is_empty() && self.exactness == Some(Exactness::Exact) {
+            self.exactness = Some(Exactness::Heuristic);
+            self.description.push_str("; a limit was reached, so heuristic");
+        }
     }
 
     fn violated(&self, places: &[usize], x: &[f64]) -> Violated {
@@ -212,11 +225,11 @@ impl Separator {
                 let mut violated = sets.iter().filter_map(|set| self.confirmed(set, &x));
                 violated.next().map_or(Membership::Satisfied, Membership::Violated)
             }
-            Method::Cut { limit } => self.membership_by_cuts(&x, *limit),
+            Method::Cut { limit, oracle } => self.membership_by_cuts(&x, *limit, oracle),
         }
     }
 
-    fn membership_by_cuts(&self, x: &[f64], limit: Option<u32>) -> Membership {
+    fn membership_by_cuts(&self, x: &[f64], limit: Option<u32>, oracle: &Oracle) -> Membership {
         let mut rules = fractional(self.compiled.scale, limit);
         rules.first_only = true;
         if self.compiled.whole {
@@ -224,7 +237,12 @@ impl Separator {
             rules.residual = tolerance::HALF;
             rules.balance = 0.0;
         }
-        let mut search = self.search(x, rules);
+        let mut quadratic = Quadratic::new(&self.compiled, x, rules.residual);
+        if self.compiled.rounding.is_some() && self.compiled.whole && self.compiled.is_granular(x) {
+            quadratic = quadratic.without_rounding();
+            rules.limit = limit.filter(|_| !self.conditions.is_bounded());
+        }
+        let mut search = Search::new(quadratic, &self.conditions, oracle.clone(), rules);
         while !search.is_finished() {
             search.step(&self.conditions);
         }

@@ -5,3 +5,4 @@ mod fractional;
 mod integral;
 mod others;
 mod random;
+mod shapes;

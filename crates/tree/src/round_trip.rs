@@ -112,6 +112,7 @@ impl RoundTrip {
             weights: vec![Number::ZERO; stops.len()],
             ground: stops,
             constant: -Number::ONE,
+            rounded: None,
             relation: Relation::AtLeast,
         });
         Some(Separator::new(&builder.build(), id.ok()?))

@@ -124,6 +124,7 @@ mod tests {
                 terms: vec![term],
                 weights: vec![Number::ZERO; 2],
                 constant: Number::ZERO,
+                rounded: None,
                 relation: Relation::AtLeast,
             };
             builder.subset_family(over_subsets).unwrap();

@@ -16,6 +16,16 @@ pub(crate) struct Linear {
     pub(crate) constant: Number,
     /// Constants that depend on the subset.
     pub(crate) loose: Vec<(Guard, Number)>,
+    /// Rounded sums of constants that depend on the subset.
+    pub(crate) rounded: Vec<Rounded>,
+}
+
+/// `factor · ⌈constant + Σ loose⌉`.
+#[derive(Debug, Clone)]
+pub(crate) struct Rounded {
+    pub(crate) factor: Number,
+    pub(crate) constant: Number,
+    pub(crate) loose: Vec<(Guard, Number)>,
 }
 
 /// What a piece of a form is multiplied by, and when it counts.
@@ -86,11 +96,38 @@ impl Evaluator {
                 })?;
             }
             Node::Size(set) if self.depends_on_subset(set) => self.size(set, scale, env, into)?,
+            Node::Ceiling(inner) => self.ceiling(inner, (scale, &Scale::one()), env, into)?,
+            Node::Floor(inner) => {
+                self.ceiling(inner, (&scale.negative(), &Scale::minus_one()), env, into)?;
+            }
             _ => {
                 let value = self.number(node, env)? * &scale.factor;
                 into.add(scale.guard, value);
                 into.constant = moderate(std::mem::take(&mut into.constant))?;
             }
+        }
+        Ok(())
+    }
+
+    /// Adds `outer · ⌈inner · node⌉` to `into`.
+    fn ceiling(
+        &self,
+        node: &Node,
+        (outer, inner): (&Scale, &Scale),
+        env: &mut Environment,
+        into: &mut Linear,
+    ) -> Evaluated<()> {
+        let mut sum = Linear::default();
+        self.linear(node, inner, env, &mut sum)?;
+        let always = outer.guard.value() == Some(true);
+        let additive = sum.terms.is_empty() && sum.rounded.is_empty();
+        if sum.loose.is_empty() && additive {
+            into.add(outer.guard, &outer.factor * Number::from(sum.constant.ceil()));
+        } else if additive && always {
+            let (constant, loose) = (sum.constant, sum.loose);
+            into.rounded.push(Rounded { factor: outer.factor.clone(), constant, loose });
+        } else {
+            return fail(subsets::nonlinear(Span::default()));
         }
         Ok(())
     }
@@ -142,7 +179,7 @@ impl Evaluator {
             Node::Negative(inner) => self.is_plain(inner),
             Node::Divide(a, _, _) => self.is_plain(a),
             Node::Size(set) => !self.depends_on_subset(set),
-            Node::Variable(..) => false,
+            Node::Variable(..) | Node::Ceiling(_) | Node::Floor(_) => false,
             Node::Over(big, ..) => *big != crate::syntax::Big::Sum,
             _ => true,
         }
@@ -224,6 +261,9 @@ impl Linear {
 
 /// The product of two forms of which one holds no column.
 fn multiply(a: &Linear, b: &Linear) -> Evaluated<Linear> {
+    if !a.rounded.is_empty() || !b.rounded.is_empty() {
+        return fail(subsets::nonlinear(Span::default()));
+    }
     let mut product = Linear::default();
     let both =
         |p: Guard, q: Guard| p.and(q).map_or_else(|| fail(subsets::nonlinear(Span::default())), Ok);

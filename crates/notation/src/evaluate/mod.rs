@@ -13,7 +13,7 @@ use std::collections::BTreeMap;
 use std::rc::Rc;
 
 pub(crate) use guard::Guard;
-pub(crate) use linear::{Linear, Scale};
+pub(crate) use linear::{Linear, Rounded, Scale};
 pub(crate) use value::{Element, Pool, Set, Value};
 pub(crate) use walk::{Found, Walk, placed};
 

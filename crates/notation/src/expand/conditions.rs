@@ -139,6 +139,9 @@ impl Expansion {
     fn additive(&mut self, node: &Node, into: &Gathered<'_>) -> Evaluated<(Vec<Number>, Number)> {
         let mut form = Linear::default();
         self.evaluator.linear(node, &Scale::one(), &mut self.env, &mut form)?;
+        if !form.rounded.is_empty() {
+            return fail(message::condition(into.span));
+        }
         weights(&form.loose, form.constant, into.ground)
             .map_or_else(|| fail(message::condition(into.span)), Ok)
     }

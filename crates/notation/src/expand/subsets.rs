@@ -4,11 +4,12 @@
 use std::collections::{BTreeMap, BTreeSet};
 use std::rc::Rc;
 
-use model::{ColumnId, FamilyState, LabelId, Number, Scope, SubsetFamily, SubsetTerm};
+use model::{ColumnId, FamilyState, LabelId, Number, RoundedUp, Scope, SubsetFamily, SubsetTerm};
 
 use super::Expansion;
 use crate::diagnostic::{size, subsets as message};
-use crate::evaluate::{Element, Evaluated, Evaluator, Guard, Linear, Scale, Set, fail};
+use crate::evaluate::{Element, Evaluated, Evaluator, Guard, Linear, Rounded, Scale, Set, fail};
+use crate::place::Span;
 use crate::plan::{FamilyPlan, RowPlan, SubsetPlan};
 use crate::syntax::Relation;
 
@@ -147,6 +148,11 @@ impl Expansion {
         let terms: Vec<SubsetTerm> = terms.collect();
         let (weights, constant) = weights(&form.loose, form.constant, ground)
             .map_or_else(|| fail(message::pair_constant(family.span)), Ok)?;
+        let rounded = match &form.rounded[..] {
+            [] => None,
+            [only] => Some(rounded_up(only, ground, family.span)?),
+            _ => return fail(message::nonlinear(family.span)),
+        };
         let tuple = Evaluator::bound(&family.tuple, &self.env);
         Ok(SubsetFamily {
             family: model::FamilyId(0),
@@ -156,6 +162,7 @@ impl Expansion {
             terms,
             weights,
             constant,
+            rounded,
             relation: match relation {
                 Relation::AtMost => model::Relation::AtMost,
                 Relation::AtLeast => model::Relation::AtLeast,
@@ -238,6 +245,13 @@ pub(super) fn weights(
         }
     }
     pairs.values().all(Number::is_zero).then_some((weights, constant))
+}
+
+/// A rounded sum of guarded constants as weights by element.
+fn rounded_up(sum: &Rounded, ground: &Set, span: Span) -> Evaluated<RoundedUp> {
+    let split = weights(&sum.loose, sum.constant.clone(), ground);
+    let (weights, constant) = split.map_or_else(|| fail(message::pair_constant(span)), Ok)?;
+    Ok(RoundedUp { factor: sum.factor.clone(), weights, constant })
 }
 
 /// All members, when there are few enough to write.

@@ -73,6 +73,7 @@ pub(crate) fn family(
         conditions,
         terms: Vec::new(),
         constant: Number::from(shape.constant),
+        rounded: None,
         relation: shape.relation,
     }
 }

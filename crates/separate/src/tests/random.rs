@@ -3,7 +3,7 @@
 
 use model::{
     ColumnId, ColumnSpec, FamilyId, FamilyState, LabelId, Model, ModelBuilder, Number, Relation,
-    Scope, Sense, SubsetCondition, SubsetFamily, SubsetFamilyId, SubsetTerm,
+    RoundedUp, Scope, Sense, SubsetCondition, SubsetFamily, SubsetFamilyId, SubsetTerm,
 };
 use proptest::prelude::*;
 
@@ -19,6 +19,10 @@ fn label() -> impl Strategy<Value = LabelId> {
 
 fn half(value: i64) -> Number {
     Number::from_parts(value.into(), 2_u32.into())
+}
+
+fn third(value: i64) -> Number {
+    Number::from_parts(value.into(), 3_u32.into())
 }
 
 fn scope(cut_only: bool) -> impl Strategy<Value = Scope> {
@@ -61,10 +65,20 @@ fn family() -> impl Strategy<Value = SubsetFamily> {
         prop::collection::vec((column, low..4, scope(cut_only)), 3..14)
     });
     let ground = Just((0..LABELS).map(LabelId).collect::<Vec<_>>()).prop_shuffle();
-    let rest =
-        (prop::collection::vec(-2_i64..3, 5), -6_i64..4, prop::collection::vec(condition(), 0..3));
+    let rounded = (prop::collection::vec(-3_i64..4, 5), -2_i64..3, -2_i64..3);
+    let rest = (
+        prop::collection::vec(-2_i64..3, 5),
+        -6_i64..4,
+        prop::collection::vec(condition(), 0..3),
+        prop::option::weighted(0.2, rounded),
+    );
     (relation, terms, ground, rest).prop_map(
-        |(relation, terms, ground, (weights, constant, conditions))| {
+        |(relation, terms, ground, (weights, constant, conditions, rounded))| {
+            let rounded = rounded.map(|(weights, constant, factor)| RoundedUp {
+                factor: half(factor),
+                weights: weights.into_iter().map(third).collect(),
+                constant: third(constant),
+            });
             let terms = terms.into_iter().map(|(column, coefficient, scope)| SubsetTerm {
                 column,
                 coefficient: half(coefficient),
@@ -78,6 +92,7 @@ fn family() -> impl Strategy<Value = SubsetFamily> {
                 terms: terms.collect(),
                 weights: weights.into_iter().map(half).collect(),
                 constant: half(constant),
+                rounded,
                 relation,
             }
         },

@@ -273,6 +273,7 @@ fn a_family_that_cannot_be_checked_leaves_the_solution_unproved() {
         terms,
         weights: vec![whole(-2); 14],
         constant: whole(-1),
+        rounded: None,
         relation: model::Relation::AtMost,
     };
     builder.subset_family(odd).unwrap();

@@ -247,6 +247,7 @@ fn subtours(builder: &mut ModelBuilder, stops: &[LabelId], arcs: &[(usize, usize
         terms: terms.collect(),
         weights: vec![whole(-1); stops.len()],
         constant: whole(1),
+        rounded: None,
         relation: Relation::AtMost,
     };
     builder.subset_family(subset_family).unwrap();

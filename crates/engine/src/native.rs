@@ -249,6 +249,7 @@ impl Drive {
                 Reply::Ready { .. }
                 | Reply::InstanceRead(_)
                 | Reply::Catalogue(_)
+                | Reply::Guide(_)
                 | Reply::Node(_)
                 | Reply::Checked(_)
                 | Reply::Written(_)

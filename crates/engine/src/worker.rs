@@ -10,7 +10,7 @@ use crate::check::check;
 use crate::fault::fault;
 use crate::handover::handed_over;
 use crate::lane::Lane;
-use crate::map::catalogue_entries;
+use crate::map::{catalogue_entries, guide_sections};
 use crate::outbox::Outbox;
 use crate::readings::Readings;
 use crate::warm::warm;
@@ -96,6 +96,7 @@ impl Worker {
                 let bound = bindings(&job, &mut self.readings);
                 self.reply(Reply::Bound(bound));
             }
+            Request::Guide => self.reply(Reply::Guide(guide_sections())),
             Request::List => self.reply(Reply::Catalogue(catalogue_entries())),
             Request::Load(job) => {
                 self.run = job.run;

@@ -379,6 +379,20 @@ fn mends_can_be_applied() {
     }
 }
 
+/// The mend of a name without indices was a line that held the name alone, an error of its own.
+#[test]
+fn a_name_without_indices_is_mended_to_a_domain_line() {
+    use hullward_notation::{check, parse};
+    let text = "minimise\n  z\nsubject to\n  z ≥ 1  (one)\n";
+    let (_, found) = check(&parse(text).tree);
+    let edit = found[0].mends[0].edit.as_ref().unwrap();
+    let mut mended = text.to_owned();
+    mended.replace_range(edit.span.clone(), &edit.text);
+    let parse = parse(&mended);
+    let found = [parse.diagnostics, check(&parse.tree).1].concat();
+    assert!(found.is_empty(), "{mended}\n{found:?}");
+}
+
 #[test]
 fn edges_named_by_one_letter() {
     let edges = "  E ⊆ V × V\n  w_e = 2 ∀ e ∈ E";

@@ -22,6 +22,8 @@ pub enum Request {
     Read(InstanceText),
     /// List the catalogue. Answered by [`Reply::Catalogue`].
     List,
+    /// Give the help on the notation. Answered by [`Reply::Guide`].
+    Guide,
     /// Check a formulation while it is typed. Answered by [`Reply::Checked`].
     Check(Box<CheckJob>),
     /// Hand a rival over to others, all at once. Answered by [`Reply::Written`].
@@ -150,6 +152,8 @@ pub enum Reply {
     InstanceRead(Box<InstanceReport>),
     /// The shipped formulations.
     Catalogue(Vec<CatalogueEntry>),
+    /// The help on the notation, in the order in which it is read.
+    Guide(Vec<GuideSection>),
     /// What is to be said of a formulation as it is typed.
     Checked(Box<CheckReport>),
     /// A rival handed over.
@@ -311,11 +315,28 @@ pub struct CheckReport {
 }
 
 impl CheckReport {
+    /// The names in scope: data, definitions and variables.
+    #[must_use]
+    pub fn names(&self) -> Vec<String> {
+        [&self.data[..], &self.variables].concat()
+    }
+
     /// Whether nothing known stands in the way of a model.
     #[must_use]
     pub fn is_sound(&self) -> bool {
         !self.remarks.iter().any(|remark| remark.complaint.error)
     }
+}
+
+/// A section of the help on the notation.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize)]
+pub struct GuideSection {
+    /// What it is about.
+    pub title: String,
+    /// What is to be known; code stands between grave accents.
+    pub words: String,
+    /// A whole formulation that shows it.
+    pub example: String,
 }
 
 /// A complaint with the changes that would mend it.

@@ -59,3 +59,6 @@ mod steering;
 
 #[path = "page/hostile.rs"]
 mod hostile;
+
+#[path = "page/helping.rs"]
+mod helping;

@@ -192,6 +192,7 @@ impl LaneRun {
             | Reply::Written(_)
             | Reply::Ready { .. }
             | Reply::InstanceRead(_)
+            | Reply::Guide(_)
             | Reply::Catalogue(_) => None,
         }
     }

@@ -14,7 +14,8 @@ use std::rc::{Rc, Weak};
 use gloo_timers::callback::Timeout;
 use record::event::NodeNumber;
 use record::message::{
-    BindJob, CheckJob, CheckReport, Complaint, Envelope, InstanceReport, LaneJob, Reply, Request,
+    BindJob, CheckJob, CheckReport, Complaint, Envelope, GuideSection, InstanceReport, LaneJob,
+    Reply, Request,
 };
 use record::opinion::Opinion;
 use record::results::ErrorReport;
@@ -55,6 +56,8 @@ struct Inner {
     reading: Option<Shared<InstanceText>>,
     wanted: Option<Shared<InstanceText>>,
     checks: Checks,
+    guide: Option<Shared<Vec<GuideSection>>>,
+    readers: Vec<Callback<Shared<Vec<GuideSection>>>>,
     opinions: Opinions,
     frame: Option<Frame>,
 }
@@ -74,6 +77,8 @@ impl Session {
                 reading: None,
                 wanted: None,
                 checks: Checks::default(),
+                guide: None,
+                readers: Vec::new(),
                 opinions: Opinions::new(hearing_opinions(session.clone())),
                 frame: None,
             })
@@ -100,6 +105,21 @@ impl Session {
         if let Some(author) = &inner.author {
             // A worker that takes no message tells so by its error event.
             let _ = author.post(&Request::Check(Box::new(job)));
+        }
+    }
+
+    /// Gives the help on the notation, which is fetched when it is first wanted.
+    pub(crate) fn guide(&self, hear: Callback<Shared<Vec<GuideSection>>>) {
+        let guide = self.0.borrow().guide.clone();
+        if let Some(guide) = guide {
+            hear.emit(guide);
+            return;
+        }
+        let mut inner = self.0.borrow_mut();
+        inner.readers.push(hear);
+        if let Some(author) = &inner.author {
+            // A worker that takes no message tells so by its error event.
+            let _ = author.post(&Request::Guide);
         }
     }
 
@@ -368,6 +388,9 @@ impl Session {
         if let Some(author) = &author {
             // A worker that takes no message tells so by its error event.
             let _ = author.post(&Request::List);
+            if !self.0.borrow().readers.is_empty() {
+                let _ = author.post(&Request::Guide);
+            }
         }
         self.0.borrow_mut().author = author;
     }
@@ -380,6 +403,17 @@ impl Session {
             FromWorker::Reply(Envelope { reply: Reply::Catalogue(entries), .. }) => {
                 let document = self.0.borrow().document.clone();
                 document.dispatch(DocumentAction::Catalogue(entries));
+            }
+            FromWorker::Reply(Envelope { reply: Reply::Guide(sections), .. }) => {
+                let guide = Shared::new(sections);
+                let readers = {
+                    let mut inner = self.0.borrow_mut();
+                    inner.guide = Some(guide.clone());
+                    std::mem::take(&mut inner.readers)
+                };
+                for reader in readers {
+                    reader.emit(guide.clone());
+                }
             }
             FromWorker::Reply(Envelope { reply: Reply::Bound(bindings), .. }) => {
                 let document = self.0.borrow().document.clone();

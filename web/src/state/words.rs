@@ -149,6 +149,21 @@ pub(crate) fn branching(branching: &Branching, columns: &[String]) -> String {
     format!("{name} {sign} {}", short(branching.bound))
 }
 
+/// A piece of a sentence.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Span<'text> {
+    /// Words.
+    Words(&'text str),
+    /// What is typed.
+    Code(&'text str),
+}
+
+/// A text in pieces: what stands between grave accents is code.
+pub(crate) fn spans(text: &str) -> impl Iterator<Item = Span<'_>> {
+    let pieces = text.split('`').enumerate();
+    pieces.map(|(place, piece)| if place % 2 == 0 { Span::Words(piece) } else { Span::Code(piece) })
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -214,5 +229,11 @@ mod tests {
             assert_eq!(family_state_from(family_state(state)), Some(state));
         }
         assert_eq!(family_state_from("perhaps"), None);
+    }
+
+    #[test]
+    fn code_stands_between_grave_accents() {
+        let found: Vec<_> = spans("a `b` c").collect();
+        assert_eq!(found, [Span::Words("a "), Span::Code("b"), Span::Words(" c")]);
     }
 }

@@ -18,11 +18,12 @@ use crate::state::pointer::Shared;
 use crate::state::typeset::row_at;
 use crate::view::editor_box::{ScriptBox, select};
 use crate::view::editor_remarks::Remarks;
+use crate::view::guide::Guide;
 use crate::view::hands::{Hands, use_hands};
 use crate::view::typeset::Set;
 
 /// Rest after typing before the text is checked, in milliseconds.
-const REST: u32 = 150;
+pub(crate) const REST: u32 = 150;
 
 #[derive(Properties, PartialEq)]
 pub(crate) struct EditorProps {
@@ -73,6 +74,7 @@ pub(crate) fn Editor(props: &EditorProps) -> Html {
     let (caret, held) = (use_state_eq(|| 0_u32), use_mut_ref(|| None::<usize>));
     // A shipped formulation is looked at before it is edited.
     let editing = use_state_eq(|| props.slot.rival.from.is_none());
+    let helping = use_state_eq(|| false);
     let begun = use_mut_ref(|| false);
     let begin = {
         let (editing, begun) = (editing.setter(), begun.clone());
@@ -97,26 +99,33 @@ pub(crate) fn Editor(props: &EditorProps) -> Html {
     });
     let setter = draft.setter();
     let change = Callback::from(move |draft: Draft| setter.set(draft));
+    let names = use_memo(checked.clone(), |checked| {
+        Shared::new(checked.as_ref().map_or_else(Vec::new, |checked| checked.report.names()))
+    });
     if !props.open {
         return html! { <div id={panel(props.slot.id)} hidden=true /> };
     }
     let state = State { running: props.draft.clone(), draft: now, checked };
     let set = set(props, &state, *caret, &held, &area);
+    let guide = format!("{}-guide", panel(props.slot.id));
+    let help = helper(&guide, &helping);
     html! {
         <div
             class={classes!("editor", editing.then_some("open"))} id={panel(props.slot.id)} role="group"
             aria-label={format!("Notation of {}", props.letter)} data-testid="editor"
         >
             if *editing {
-                { written(props, &state, hands.as_ref(), Text { pieces: (*coloured).clone(), area, change, caret: caret.setter() }) }
+                { written(props, &state, hands.as_ref(), Text { pieces: (*coloured).clone(), names: (*names).clone(), help, area, change, caret: caret.setter() }) }
                 { set }
             } else {
                 { set }
                 <div class="row">
                     <button type="button" data-testid="edit" onclick={begin}>{ "Edit" }</button>
                     { duplicate(props.slot.id, hands.as_ref()) }
+                    { help }
                 </div>
             }
+            if *helping { <Guide id={guide} /> }
         </div>
     }
 }
@@ -124,6 +133,8 @@ pub(crate) fn Editor(props: &EditorProps) -> Html {
 /// What the box of the text is drawn with.
 struct Text {
     pieces: Shared<Vec<Piece>>,
+    names: Shared<Vec<String>>,
+    help: Html,
     area: NodeRef,
     change: Callback<Draft>,
     caret: UseStateSetter<u32>,
@@ -144,12 +155,12 @@ fn written(props: &EditorProps, state: &State, hands: Option<&Hands>, text: Text
             { heading(&state.draft, &text.change) }
             <ScriptBox
                 id={text_box(props.slot.id)} label={format!("Notation of {}", props.letter)}
-                text={state.draft.text.clone()} pieces={text.pieces}
+                text={state.draft.text.clone()} pieces={text.pieces} names={text.names}
                 invalid={state.is_wrong()} described_by={format!("{told} {listed}")}
                 area={text.area.clone()} typed={typed.clone()} enter={enter.clone()}
                 caret={Callback::from(move |at| text.caret.set(at))}
             />
-            { buttons(props, state, &enter, hands) }
+            { buttons(props, state, &enter, hands, text.help) }
             <div class="small">
                 <p id={told} role="status" data-testid="notation-state">{ state.words() }</p>
                 <Remarks
@@ -158,6 +169,18 @@ fn written(props: &EditorProps, state: &State, hands: Option<&Hands>, text: Text
                 />
             </div>
         </div>
+    }
+}
+
+/// The button of the help on the notation.
+fn helper(guide: &str, open: &UseStateHandle<bool>) -> Html {
+    let (shown, open) = (**open, open.setter());
+    let onclick = Callback::from(move |_: MouseEvent| open.set(!shown));
+    html! {
+        <button
+            type="button" data-testid="help" aria-expanded={if shown { "true" } else { "false" }}
+            aria-controls={guide.to_owned()} {onclick}
+        >{ "Help" }</button>
     }
 }
 
@@ -301,6 +324,7 @@ fn buttons(
     state: &State,
     enter: &Callback<()>,
     hands: Option<&Hands>,
+    help: Html,
 ) -> Html {
     let able = state.can_be_used();
     let run = enter.reform(|_: MouseEvent| ());
@@ -314,6 +338,7 @@ fn buttons(
                 <button type="button" data-testid="restore" onclick={act(Edit::Restore, props.slot.id, hands)}>{ "Back to the shipped text" }</button>
             }
             { duplicate(props.slot.id, hands) }
+            { help }
         </div>
     }
 }

@@ -1,5 +1,5 @@
 //! The box that notation is typed into: a text area over the same text in colours, which scrolls
-//! in step with it, and signs offered for the command before the caret.
+//! in step with it, and what is offered for the command or the name before the caret.
 
 use wasm_bindgen::JsCast;
 use web_sys::{Element, HtmlDocument, HtmlTextAreaElement};
@@ -18,6 +18,8 @@ pub(crate) struct BoxProps {
     pub(crate) label: String,
     pub(crate) text: String,
     pub(crate) pieces: Shared<Vec<Piece>>,
+    /// Names in scope, which are offered by their first letters.
+    pub(crate) names: Shared<Vec<String>>,
     pub(crate) invalid: bool,
     pub(crate) described_by: String,
     pub(crate) area: NodeRef,
@@ -35,9 +37,10 @@ pub(crate) fn ScriptBox(props: &BoxProps) -> Html {
     let behind = use_node_ref();
     let look = {
         let (area, offered, dismissed) = (props.area.clone(), offered.setter(), dismissed.clone());
-        let caret = props.caret.clone();
+        let (caret, names) = (props.caret.clone(), props.names.clone());
         move || {
-            let offer = current(&area).filter(|offer| *dismissed.borrow() != Some(offer.start));
+            let offer =
+                current(&area, &names).filter(|offer| *dismissed.borrow() != Some(offer.start));
             offered.set(offer);
             if let Some((_, end)) = selection(&area) {
                 caret.emit(end);
@@ -54,7 +57,7 @@ pub(crate) fn ScriptBox(props: &BoxProps) -> Html {
     };
     let onkeydown = {
         let (area, typed, enter) = (props.area.clone(), props.typed.clone(), props.enter.clone());
-        let offered = offered.setter();
+        let (offered, names) = (offered.setter(), props.names.clone());
         Callback::from(move |event: KeyboardEvent| {
             let Some(key) = Key::of(&event) else { return };
             if key == Key::Use {
@@ -62,7 +65,8 @@ pub(crate) fn ScriptBox(props: &BoxProps) -> Html {
                 enter.emit(());
                 return;
             }
-            let offer = current(&area).filter(|offer| *dismissed.borrow() != Some(offer.start));
+            let offer = current(&area, &names);
+            let offer = offer.filter(|offer| *dismissed.borrow() != Some(offer.start));
             let Some(offer) = offer else { return };
             if key != Key::Space {
                 event.prevent_default();
@@ -70,8 +74,8 @@ pub(crate) fn ScriptBox(props: &BoxProps) -> Html {
             if key == Key::Dismiss {
                 *dismissed.borrow_mut() = Some(offer.start);
                 offered.set(None);
-            } else if let Some(sign) = offer.sign(key == Key::Tab) {
-                replace(&area, (offer.start, offer.end), sign, &typed);
+            } else if let Some(taken) = offer.taken(key == Key::Tab) {
+                replace(&area, (offer.start, offer.end), taken, &typed);
             }
         })
     };
@@ -132,10 +136,10 @@ impl Key {
 }
 
 /// The offer at the caret; none while something is selected.
-fn current(area: &NodeRef) -> Option<Offer> {
+fn current(area: &NodeRef, names: &[String]) -> Option<Offer> {
     let (start, end) = selection(area)?;
     let text = area.cast::<HtmlTextAreaElement>()?.value();
-    if start == end { offer(&text, end) } else { None }
+    if start == end { offer(&text, end, names) } else { None }
 }
 
 fn selection(area: &NodeRef) -> Option<(u32, u32)> {
@@ -195,9 +199,10 @@ fn offers(offer: Option<&Offer>) -> Html {
     html! {
         <p class="offers" data-testid="offers" aria-live="polite">
             if let Some(offer) = offer {
-                for (place, (command, sign)) in offer.choices.iter().enumerate() {
+                for (place, choice) in offer.choices.iter().enumerate() {
                     <span>
-                        <b>{ *sign }</b>{ format!(" \\{command}") }
+                        <b>{ choice.text.clone() }</b>
+                        if !choice.command.is_empty() { { format!(" \\{}", choice.command) } }
                         if place == 0 { { ": Tab, or Escape to keep it as it is" } }
                     </span>
                 }

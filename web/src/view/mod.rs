@@ -15,6 +15,7 @@ pub(crate) mod evidence;
 pub(crate) mod families;
 pub(crate) mod figure;
 pub(crate) mod grid;
+mod guide;
 pub(crate) mod handover;
 pub(crate) mod hands;
 pub(crate) mod inspector;

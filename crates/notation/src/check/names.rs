@@ -64,8 +64,7 @@ impl Checker<'_> {
         let shown =
             used.map_or_else(|| name.to_owned(), |(used, clauses)| with_clauses(used, &clauses));
         let variable = self.tree.ends.statements.map(after);
-        let variable =
-            variable.map(|at| (at, format!("\n  {}", shown.replacen("  ∀", " ≥ 0  ∀", 1))));
+        let variable = variable.map(|at| (at, format!("\n  {}", not_negative(&shown))));
         let datum = self.tree.ends.data.map(|at| (after(at), format!("\n  {shown}")));
         message::Additions { variable, datum }
     }
@@ -266,6 +265,13 @@ fn is_piece(word: &str, from: usize, to: usize, known: &dyn Fn(&str) -> bool) ->
     known(piece) || digits(piece) && !beside
 }
 
+/// The domain line of a new variable: its name with indices, then its quantifier if it has one.
+fn not_negative(shown: &str) -> String {
+    match shown.split_once("  ∀") {
+        Some((name, quantifier)) => format!("{name} ≥ 0  ∀{quantifier}"),
+        None => format!("{shown} ≥ 0"),
+    }
+}
 #[cfg(test)]
 mod tests {
     use super::{Piece, splits};

@@ -199,3 +199,19 @@ async fn commands_become_signs_and_tab_is_no_trap() -> Outcome<()> {
     })
     .await
 }
+
+#[tokio::test(flavor = "multi_thread")]
+async fn the_first_letters_of_a_name_in_scope_offer_the_name() -> Outcome<()> {
+    visit(Source::Server, async |browser| {
+        let field = open(browser, "A").await?;
+        let named = "data\n  I  depots\n  demand_i = 1  ∀ i ∈ I  pieces\nminimise\n  \
+            Σ_{i ∈ I} demand_i x_i\nsubject to\n  x_i ≥ 0  ∀ i ∈ I\n  ";
+        write(browser, "A", named, ("notation-state", "No errors")).await?;
+        field.send_keys("dem").await?;
+        shows(browser, "A", ("offers", "demand")).await?;
+        field.send_keys(&char::from(Key::Tab).to_string()).await?;
+        assert_eq!(typed(browser, "A").await?, format!("{named}demand"));
+        Ok(())
+    })
+    .await
+}

@@ -289,3 +289,50 @@ pub enum Kind {
     /// `¬a`
     Not(Box<Expression>),
 }
+
+/// Visits every name in an expression.
+pub(crate) fn each_name(expression: &mut Expression, visit: &mut dyn FnMut(&mut Name)) {
+    if let Kind::Name(name) | Kind::Call(name, _) = &mut expression.kind {
+        visit(name);
+    }
+    for child in children_mut(&mut expression.kind) {
+        each_name(child, visit);
+    }
+}
+
+/// All expressions directly inside one, to change them.
+fn children_mut(kind: &mut Kind) -> Vec<&mut Expression> {
+    match kind {
+        Kind::Number(_) | Kind::Infinity | Kind::EmptySet | Kind::NumberSet(_) => Vec::new(),
+        Kind::Name(name) => {
+            name.indices.iter_mut().chain(name.superscript.as_deref_mut()).collect()
+        }
+        Kind::Call(_, items)
+        | Kind::Function(_, items)
+        | Kind::Tuple(items)
+        | Kind::Set(items)
+        | Kind::All(items)
+        | Kind::Any(items) => items.iter_mut().collect(),
+        Kind::Negative(inner) | Kind::Parity(inner, _) | Kind::Not(inner) => vec![inner],
+        Kind::Additive(first, rest) => pairs_mut(first, rest),
+        Kind::Multiplicative(first, rest) => pairs_mut(first, rest),
+        Kind::Chain(first, rest) => pairs_mut(first, rest),
+        Kind::Power(a, b) | Kind::Range(a, b) | Kind::Interval(a, b) | Kind::Clique(a, b) => {
+            vec![a, b]
+        }
+        Kind::Big(_, clause, body) => {
+            let clause = clause.items.iter_mut().chain(&mut clause.such_that);
+            clause.chain([body.as_mut()]).collect()
+        }
+        Kind::Builder(member, conditions) => {
+            [member.as_mut()].into_iter().chain(conditions).collect()
+        }
+    }
+}
+
+fn pairs_mut<'e, T>(
+    first: &'e mut Expression,
+    rest: &'e mut [(T, Expression)],
+) -> Vec<&'e mut Expression> {
+    [first].into_iter().chain(rest.iter_mut().map(|(_, operand)| operand)).collect()
+}

@@ -19,6 +19,8 @@ struct Paper {
     text: String,
     instance: String,
     expected: BTreeMap<String, String>,
+    /// Names that the instance spells otherwise.
+    names: BTreeMap<String, String>,
 }
 
 fn papers(folder: &str) -> Vec<Paper> {
@@ -30,11 +32,14 @@ fn papers(folder: &str) -> Vec<Paper> {
         let whole = std::fs::read_to_string(&path).unwrap();
         let (text, rest) = whole.split_once("=== instance\n").unwrap();
         let (instance, expected) = rest.split_once("=== expect\n").unwrap();
+        let names = expected.lines().filter_map(|line| line.strip_prefix("bind "));
+        let names = names.filter_map(|line| line.rsplit_once(' '));
         let pair = |line: &str| line.split_once(' ').map(|(k, v)| (k.to_owned(), v.to_owned()));
         Paper {
             name: path.file_stem().unwrap().to_string_lossy().into_owned(),
             text: text.to_owned(),
             instance: instance.to_owned(),
+            names: names.map(|(a, b)| (a.to_owned(), b.to_owned())).collect(),
             expected: expected.lines().filter_map(pair).collect(),
         }
     };
@@ -51,7 +56,7 @@ fn wrong(paper: &Paper) -> Option<String> {
     let Some(instance) = reading.instance else {
         return Some(format!("  the instance: {:?}\n", reading.complaints));
     };
-    let made = model(&paper.text, &instance, &BTreeMap::new(), &BTreeMap::new());
+    let made = model(&paper.text, &instance, &paper.names, &BTreeMap::new());
     let (made, _) = match made {
         Ok(made) => made,
         Err(found) => return Some(told(&paper.text, &found)),

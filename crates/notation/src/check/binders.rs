@@ -1,6 +1,7 @@
 //! Quantifiers to steps: a new name binds, a bound one makes a condition, left to right.
 
 use super::indices::place_name;
+use super::order::in_order_of_need;
 use super::{Bound, Checker, Local};
 use crate::diagnostic::{names as message, shapes, subsets};
 use crate::place::Span;
@@ -8,7 +9,7 @@ use crate::plan::{Node, Pattern, Root, Step, SubsetPlan};
 use crate::syntax::{Clause, Expression, Kind, Name, Relation};
 
 /// The most indices that are bound on one line, and places that a tuple may have.
-const INDEX_LIMIT: usize = 24;
+pub(super) const INDEX_LIMIT: usize = 24;
 
 /// The work on one quantifier.
 pub(super) struct Quantifier<'e> {
@@ -18,7 +19,7 @@ pub(super) struct Quantifier<'e> {
     /// How many of them stand before the colon at hand and cannot share a set behind it.
     fenced: usize,
     /// Conditions that wait for a pending name.
-    deferred: Vec<Expression>,
+    pub(super) deferred: Vec<Expression>,
     pub(super) carriers: Vec<&'e Expression>,
     subsets: bool,
     /// Whether the item at hand stands behind the colon.
@@ -46,12 +47,12 @@ impl Checker<'_> {
         let mut sound = true;
         for clause in clauses {
             work.behind_colon = false;
-            for item in &clause.items {
+            for item in in_order_of_need(&clause.items) {
                 sound &= self.item(item, &mut work).is_some();
             }
             work.fenced = work.pending.len();
             work.behind_colon = true;
-            for item in &clause.such_that {
+            for item in &self.with_shared_sets(&clause.such_that) {
                 sound &= self.item(item, &mut work).is_some();
             }
         }
@@ -63,6 +64,22 @@ impl Checker<'_> {
             self.condition_step(&condition, &mut work)?;
         }
         Some(work.steps)
+    }
+
+    /// `i, j ∈ U` behind a colon, both bound: each of them is asked.
+    fn with_shared_sets(&self, items: &[Expression]) -> Vec<Expression> {
+        let mut out = items.to_vec();
+        for at in (1..out.len()).rev() {
+            let Kind::Name(name) = &out[at - 1].kind else { continue };
+            let Kind::Chain(first, links) = &out[at].kind else { continue };
+            let member = matches!(links[..], [(Relation::In, _)]);
+            let bound = self.local(&name.text).is_some() && matches!(first.kind, Kind::Name(_));
+            if member && bound {
+                let kind = Kind::Chain(Box::new(out[at - 1].clone()), links.clone());
+                out[at - 1].kind = kind;
+            }
+        }
+        out
     }
 
     fn item(&mut self, item: &Expression, work: &mut Quantifier<'_>) -> Option<()> {
@@ -137,6 +154,8 @@ impl Checker<'_> {
                 work.pending.push((name.text.clone(), item.span));
             }
         }
+        // i < j, k ∈ K: the set of k is not that of i
+        work.fenced = work.pending.len();
         work.deferred.push(item.clone());
         Some(())
     }
@@ -189,7 +208,10 @@ impl Checker<'_> {
         links: &[(Relation, Expression)],
         work: &mut Quantifier<'_>,
     ) -> Option<bool> {
-        let rising = links.iter().all(|(r, _)| matches!(r, Relation::Less | Relation::AtMost));
+        let rises = |r: Relation| matches!(r, Relation::Less | Relation::AtMost);
+        let rising = links.iter().all(|(r, _)| rises(*r) || *r == Relation::NotEqual)
+            && links.first().is_some_and(|(r, _)| rises(*r))
+            && links.last().is_some_and(|(r, _)| rises(*r));
         let (Some(first), Some(last)) = (operands.first(), operands.last()) else {
             return Some(false);
         };
@@ -216,7 +238,7 @@ impl Checker<'_> {
         Some(true)
     }
 
-    fn membership_step(
+    pub(super) fn membership_step(
         &mut self,
         left: &Expression,
         right: &Expression,
@@ -368,9 +390,42 @@ impl Checker<'_> {
                     return self.report(message::taken(&name.text, item.span, "variable"));
                 }
             }
+            if items.iter().any(|other| self.computes_from(item, other, work)) {
+                pattern.push(self.computed_place(item, root, work));
+                continue;
+            }
             pattern.push(Pattern::Match(self.index(item)?.0));
         }
         Some(pattern)
+    }
+
+    /// Whether a place of a tuple is computed from one that is bound beside it: `(k, k + w)`.
+    fn computes_from(&self, item: &Expression, other: &Expression, work: &Quantifier<'_>) -> bool {
+        let Kind::Name(name) = &other.kind else { return false };
+        let fresh =
+            self.is_new(name, work) || matches!(self.locals.last(), Some(l) if l.name == name.text);
+        if !fresh || matches!(item.kind, Kind::Name(_)) {
+            return false;
+        }
+        let mut words = std::collections::BTreeSet::new();
+        super::usage::words(item, &mut words);
+        words.contains(name.text.as_str())
+    }
+
+    /// A place that is bound to a name of its own, with the computation as a condition.
+    fn computed_place(
+        &mut self,
+        item: &Expression,
+        root: Root,
+        work: &mut Quantifier<'_>,
+    ) -> Pattern {
+        let own = place_name("computed", self.locals.len());
+        let slot = self.bind(&own, root);
+        let own = Name { text: own, indices: Vec::new(), superscript: None };
+        let own = Expression { kind: Kind::Name(own), span: item.span };
+        let kind = Kind::Chain(Box::new(own), vec![(Relation::Equal, item.clone())]);
+        work.deferred.push(Expression { kind, span: item.span });
+        Pattern::Bind(slot)
     }
 
     fn graph_step(

@@ -104,6 +104,17 @@ impl Checker<'_> {
         let a = self.expression(left);
         let b = self.expression(right);
         let (a, b) = (a?, b?);
+        // i ≠ 0 asks for the label 0, also where the other labels are no numbers
+        for (element, other, written) in [(&a, &b, right), (&b, &a, left)] {
+            if let (Form::Element(_), Kind::Number(value), true) =
+                (&element.form, &written.kind, equality)
+                && value.is_int()
+            {
+                let label = Node::AsElement(Box::new(other.node.clone()), other.span);
+                let is = relation == Relation::Equal;
+                return Some(Node::Same(is, Box::new(element.node.clone()), Box::new(label)));
+            }
+        }
         let set = |form: &Form| matches!(form, Form::Set(_) | Form::Empty);
         if set(&a.form) && set(&b.form) && equality {
             return Some(Node::Sets(relation, Box::new(a.node), Box::new(b.node)));

@@ -37,6 +37,9 @@ impl<'t> Checker<'t> {
     }
 
     fn names_of(&mut self, line: &'t Line, datum: bool, declared: &mut Vec<Declared<'t>>) {
+        if is_remark_on_a_label(line) {
+            return;
+        }
         // 0 ≤ c_{i,j} declares c as well
         let flipped = line.left.len() == 1 && !matches!(line.left[0].kind, Kind::Name(_));
         let (names, links) = match (flipped, line.links.first()) {
@@ -45,7 +48,15 @@ impl<'t> Checker<'t> {
                 links.extend(line.links[1..].iter().map(|(r, e)| (*r, e)));
                 (vec![name], links)
             }
-            _ => (line.left.iter().collect(), line.links.iter().map(|(r, e)| (*r, e)).collect()),
+            _ => {
+                // [e_i, l_i] declares both
+                let ends = line.left.iter().flat_map(|e| match &e.kind {
+                    Kind::Interval(a, b) => vec![a.as_ref(), b.as_ref()],
+                    Kind::Tuple(items) => items.iter().collect(),
+                    _ => vec![e],
+                });
+                (ends.collect(), line.links.iter().map(|(r, e)| (*r, e)).collect())
+            }
         };
         for expression in names {
             let Kind::Name(name) = &expression.kind else {
@@ -61,7 +72,8 @@ impl<'t> Checker<'t> {
             self.names.insert(name.text.clone(), Global::Symbol(id));
             let mut symbol = blank(&name.text, expression.span, datum);
             // until it is declared, which it never is when it is defined by itself
-            symbol.roots = vec![Root::Unknown; name.indices.len()];
+            let raised = usize::from(name.superscript.is_some());
+            symbol.roots = vec![Root::Unknown; name.indices.len() + raised];
             self.symbols.push(symbol);
             declared.push(Declared { name, span: expression.span, line, links: links.clone() });
         }
@@ -121,15 +133,16 @@ impl<'t> Checker<'t> {
                 }
             }
         }
-        let own: Vec<SymbolId> = declared
-            .line
-            .left
-            .iter()
+        let left = declared.line.left.iter().flat_map(|e| match &e.kind {
+            Kind::Interval(a, b) => vec![a.as_ref(), b.as_ref()],
+            Kind::Tuple(items) => items.iter().collect(),
+            _ => vec![e],
+        });
+        let several = left.clone().count() > 1;
+        let own: Vec<SymbolId> = left
             .chain(declared.line.links.first().map(|(_, e)| e))
             .filter_map(|e| match &e.kind {
-                Kind::Name(name)
-                    if name.text == declared.name.text || declared.line.left.len() > 1 =>
-                {
+                Kind::Name(name) if name.text == declared.name.text || several => {
                     match self.names.get(&name.text) {
                         Some(Global::Symbol(id)) => Some(*id),
                         _ => None,
@@ -151,7 +164,10 @@ impl<'t> Checker<'t> {
         let mut carriers: Vec<&Expression> = declared.links.iter().map(|(_, e)| *e).collect();
         carriers.extend(declared.name.indices.iter());
         let Some(steps) = self.quantify(&declared.line.clauses, &carriers, false) else { return };
-        let written = self.spread(&declared.name.indices, usize::MAX);
+        let mut written = self.spread(&declared.name.indices, usize::MAX);
+        if let Some(raised) = &declared.name.superscript {
+            written.extend(self.spread(std::slice::from_ref(raised), usize::MAX));
+        }
         let mut indices = Vec::with_capacity(written.len());
         let mut roots = Vec::with_capacity(written.len());
         for index in &written {
@@ -263,6 +279,13 @@ impl<'t> Checker<'t> {
         self.symbols[id].value = Some(typed.node);
         Some(shape)
     }
+}
+
+/// `0 ∈ V` says that the instance has a label 0, and declares nothing; so does `0` alone.
+fn is_remark_on_a_label(line: &Line) -> bool {
+    let [only] = &line.left[..] else { return false };
+    let member = line.links.iter().all(|(relation, _)| *relation == Relation::In);
+    matches!(only.kind, Kind::Number(_)) && member
 }
 
 fn blank(name: &str, span: Span, datum: bool) -> Symbol {

@@ -22,7 +22,18 @@ impl<'t> Checker<'t> {
     /// The role of each statement; the variables that they declare become known.
     pub(super) fn find_domains(&mut self) -> Vec<Role> {
         let tree = self.tree;
-        let roles: Vec<Role> = tree.statements.iter().map(|line| self.role(line)).collect();
+        let mut roles: Vec<Role> = tree.statements.iter().map(|line| self.role(line)).collect();
+        let labelled: Vec<bool> =
+            tree.statements.iter().map(|l| l.label.is_some() && self.is_domain(l)).collect();
+        let mut unlabelled = BTreeSet::new();
+        for (line, role) in tree.statements.iter().zip(&roles) {
+            unlabelled.extend(declared(line, role).into_iter().filter_map(text_of));
+        }
+        for ((line, role), labelled) in tree.statements.iter().zip(&mut roles).zip(labelled) {
+            if labelled && is_numbered_domain(line, &unlabelled) {
+                *role = Role::Domain;
+            }
+        }
         for (line, role) in tree.statements.iter().zip(&roles) {
             for operand in declared(line, role) {
                 self.new_variable(operand);
@@ -45,6 +56,11 @@ impl<'t> Checker<'t> {
             domains: Vec::new(),
             used: false,
         });
+    }
+
+    /// Whether a line holds one variable, or a list, and constants.
+    fn is_domain(&self, line: &Line) -> bool {
+        self.role(&Line { label: None, ..line.clone() }) == Role::Domain
     }
 
     fn role(&self, line: &Line) -> Role {
@@ -103,9 +119,14 @@ impl<'t> Checker<'t> {
                 usage::of_clause(clause).chain([body.as_ref()]).all(|e| self.is_constant(e, &inner))
             }
             Kind::Name(name) | Kind::Call(name, _) => {
-                bound.contains(name.text.as_str())
-                    || matches!(self.names.get(&name.text), Some(Global::Symbol(_)))
-                    || self.splits_into_known(&name.text, bound)
+                let inner = match &expression.kind {
+                    Kind::Call(_, arguments) => &arguments[..],
+                    _ => &[],
+                };
+                inner.iter().all(|e| self.is_constant(e, bound))
+                    && (bound.contains(name.text.as_str())
+                        || matches!(self.names.get(&name.text), Some(Global::Symbol(_)))
+                        || self.splits_into_known(&name.text, bound))
             }
             _ => {
                 usage::children(expression).into_iter().all(|child| self.is_constant(child, bound))
@@ -200,7 +221,7 @@ impl<'t> Checker<'t> {
     fn own_indices(&mut self, name: &Name) -> Option<(Vec<Node>, Vec<Root>)> {
         let mut written = self.spread(&name.indices, usize::MAX);
         if let Some(raised) = &name.superscript {
-            written.push(raised.as_ref().clone());
+            written.extend(self.spread(std::slice::from_ref(raised), usize::MAX));
         }
         let read: Vec<Option<(Node, Root)>> =
             written.iter().map(|index| self.index(index)).collect();
@@ -279,6 +300,27 @@ impl<'t> Checker<'t> {
             }
             _ => self.report(message::domain(operand.span)),
         }
+    }
+}
+
+/// A domain line stays one with a label that only numbers it, with a membership, or where no
+/// other line declares its variables.
+fn is_numbered_domain(line: &Line, unlabelled: &BTreeSet<String>) -> bool {
+    let number = |label: &str| {
+        let letters = label.chars().filter(|c| c.is_alphabetic()).count();
+        label.starts_with(|c: char| c.is_ascii_digit()) && letters <= 1
+    };
+    let numbered = line.label.as_ref().is_some_and(|label| number(&label.text));
+    let member = line.links.iter().any(|(relation, _)| *relation == Relation::In);
+    let all = declared(line, &Role::Domain);
+    let alone = all.into_iter().filter_map(text_of).any(|name| !unlabelled.contains(&name));
+    numbered || member || alone
+}
+
+fn text_of(operand: &Expression) -> Option<String> {
+    match &operand.kind {
+        Kind::Name(name) => Some(name.text.clone()),
+        _ => None,
     }
 }
 

@@ -5,6 +5,7 @@ use crate::diagnostic::{rows, shapes as message};
 use crate::place::Span;
 use crate::plan::{Node, Root, Slot, Step};
 use crate::syntax::{Additive, Big, Clause, Expression, Function, Kind, Multiplicative, Name};
+use model::Number;
 
 impl Checker<'_> {
     /// Resolves an expression; what mentions no bound name and no variable is evaluated once.
@@ -230,6 +231,9 @@ impl Checker<'_> {
         };
         let nodes: Vec<Option<Node>> = arguments.iter().map(|a| self.data(a, what)).collect();
         let mut nodes: Vec<Node> = nodes.into_iter().collect::<Option<_>>()?;
+        if let Some(node) = self.half_of_odd(function, &nodes) {
+            return Some(self.constant(node, span));
+        }
         let node = match function {
             Function::Floor => Node::Floor(Box::new(nodes.pop()?)),
             Function::Ceiling => Node::Ceiling(Box::new(nodes.pop()?)),
@@ -237,6 +241,27 @@ impl Checker<'_> {
             _ => Node::Greatest(nodes),
         };
         Some(self.constant(node, span))
+    }
+
+    /// `⌊|S|/2⌋` where `|S|` is odd is `(|S| − 1)/2`.
+    fn half_of_odd(&self, function: Function, nodes: &[Node]) -> Option<Node> {
+        let step = match function {
+            Function::Floor => true,
+            Function::Ceiling => false,
+            _ => return None,
+        };
+        let [Node::Divide(size, two, place)] = nodes else { return None };
+        let subset = |node: &Node| matches!(node, Node::Size(set) if matches!(**set, Node::Subset));
+        let halved = matches!(two.as_ref(), Node::Number(n) if *n == Number::from(2));
+        if !subset(size)
+            || !halved
+            || !is_odd(self.subset.as_ref()?.conditions.iter().map(|c| &c.0))
+        {
+            return None;
+        }
+        let one = Node::Number(Number::ONE);
+        let sum = Node::Add(vec![(false, size.as_ref().clone()), (step, one)]);
+        Some(Node::Divide(Box::new(sum), two.clone(), *place))
     }
 
     fn big(&mut self, big: Big, clause: &Clause, body: &Expression, span: Span) -> Option<Typed> {
@@ -318,4 +343,15 @@ impl Checker<'_> {
         let node = Node::Over(Big::Sum, steps, Box::new(node), span);
         Some(Typed { node, form: Form::Number, variable, span })
     }
+}
+
+/// Whether one of the conditions says that the subset has odd size.
+fn is_odd<'n>(mut conditions: impl Iterator<Item = &'n Node>) -> bool {
+    conditions.any(|node| match node {
+        Node::Parity(true, size, _) => {
+            matches!(size.as_ref(), Node::Size(set) if matches!(**set, Node::Subset))
+        }
+        Node::All(all) => is_odd(all.iter()),
+        _ => false,
+    })
 }

@@ -72,6 +72,9 @@ impl Checker<'_> {
 
     /// The places of a name that stands for a tuple; else the expression itself.
     pub(super) fn places(&self, expression: &Expression) -> Vec<Expression> {
+        if let Kind::Tuple(items) = &expression.kind {
+            return items.iter().flat_map(|item| self.places(item)).collect();
+        }
         let Kind::Name(name) = &expression.kind else { return vec![expression.clone()] };
         let tuple = self.local(&name.text).map(|at| self.locals[at].what);
         match tuple {

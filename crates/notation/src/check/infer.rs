@@ -33,6 +33,11 @@ impl Checker<'_> {
     }
 
     fn infer_one(&mut self, name: &str, span: Span, work: &mut Quantifier<'_>) -> Option<()> {
+        if let Some(set) = self.set_of_equal(name, work) {
+            let own = Name { text: name.to_owned(), indices: Vec::new(), superscript: None };
+            let own = Expression { kind: Kind::Name(own), span };
+            return self.membership_step(&own, &set, work);
+        }
         let mut sources = Vec::new();
         for carrier in &work.carriers {
             self.collect(carrier, name, &mut sources);
@@ -44,6 +49,12 @@ impl Checker<'_> {
             return Some(());
         }
         let only = if sources.len() == 1 { sources.pop() } else { None };
+        if let (None | Some(Source::Unknown), Some(set)) = (&only, self.habits.get(name).cloned()) {
+            let own = Name { text: name.to_owned(), indices: Vec::new(), superscript: None };
+            let own = Expression { kind: Kind::Name(own), span };
+            self.tell(name, &crate::print::expression(&set), span);
+            return self.membership_step(&own, &Expression { span, ..set }, work);
+        }
         match only {
             None | Some(Source::Unknown) => return self.report(message::no_set(name, span)),
             Some(Source::Whole(set)) => {
@@ -72,6 +83,28 @@ impl Checker<'_> {
             }
         }
         Some(())
+    }
+
+    /// `i = o_p` with an element on the right: the set from which that is.
+    fn set_of_equal(&mut self, name: &str, work: &Quantifier<'_>) -> Option<Expression> {
+        let is = |e: &Expression| matches!(&e.kind, Kind::Name(n) if n.text == name && n.indices.is_empty());
+        let other = work.deferred.iter().find_map(|condition| {
+            let Kind::Chain(first, links) = &condition.kind else { return None };
+            let [(crate::syntax::Relation::Equal, last)] = &links[..] else { return None };
+            match (is(first), is(last)) {
+                (true, false) => Some(last.clone()),
+                (false, true) => Some(first.as_ref().clone()),
+                _ => None,
+            }
+        })?;
+        let Kind::Name(element) = &other.kind else { return None };
+        let Some(Global::Symbol(id)) = self.names.get(&element.text) else { return None };
+        let crate::plan::Shape::Element(Root::Set(set)) = self.symbols[*id].shape else {
+            return None;
+        };
+        let text = self.symbols[set].name.clone();
+        let set = Name { text, indices: Vec::new(), superscript: None };
+        Some(Expression { kind: Kind::Name(set), span: other.span })
     }
 
     fn set_root(&self, set: SymbolId, place: usize) -> Root {
@@ -103,7 +136,10 @@ impl Checker<'_> {
             Global::Symbol(id) => (&self.symbols[*id].roots, self.symbols[*id].tuples),
             Global::Variable(v) => (&self.variables[*v].roots, self.variables[*v].tuples),
         };
-        let written = self.letters_with(&name.indices, index, roots.len());
+        let raised = usize::from(name.superscript.is_some());
+        let mut written =
+            self.letters_with(&name.indices, index, roots.len().saturating_sub(raised));
+        written.extend(name.superscript.as_deref().cloned());
         let is_index = |e: &Expression| matches!(&e.kind, Kind::Name(n) if n.text == index && n.indices.is_empty());
         let place = written.iter().position(is_index)?;
         let known = |(i, e): (usize, &Expression)| i == place || self.expression_known(e);

@@ -3,6 +3,7 @@
 //! All that can be said without an instance is said here, for the whole text at once.
 
 mod binders;
+mod complete;
 mod condition;
 mod declare;
 mod domain;
@@ -11,11 +12,12 @@ mod family;
 mod indices;
 mod infer;
 mod names;
+mod order;
 mod sets;
 mod usage;
 
 pub(crate) use family::is_arrow;
-pub(crate) use usage::children;
+pub(crate) use usage::{children, words};
 
 use std::collections::{BTreeMap, BTreeSet};
 use std::rc::Rc;
@@ -23,7 +25,7 @@ use std::rc::Rc;
 use crate::diagnostic::{Diagnostic, names as message, syntax, tidy};
 use crate::place::Span;
 use crate::plan::{Node, Plan, Root, Slot, SubsetPlan, Symbol, SymbolId, Variable, VariableNumber};
-use crate::syntax::Formulation;
+use crate::syntax::{Expression, Formulation};
 
 /// A formulation whose names and shapes are in order, as far as its diagnostics do not say
 /// otherwise.
@@ -83,9 +85,13 @@ impl Checked {
 /// Checks a tree. `O(tree · log names)`.
 #[must_use]
 pub fn check(tree: &Formulation) -> (Checked, Vec<Diagnostic>) {
-    let mut checker = Checker::new(tree);
+    let completed = complete::completed(tree);
+    let mut checker = Checker::new(&completed.tree);
+    checker.habits = completed.habits;
     let plan = checker.formulation();
-    let diagnostics = tidy(checker.diagnostics);
+    let mut diagnostics = checker.diagnostics;
+    diagnostics.extend(completed.notes);
+    let diagnostics = tidy(diagnostics);
     let sound = tree.complete && !diagnostics.iter().any(Diagnostic::is_error);
     (Checked { plan: Rc::new(plan), sound }, diagnostics)
 }
@@ -149,6 +155,8 @@ struct Checker<'t> {
     symbols: Vec<Symbol>,
     variables: Vec<Variable>,
     names: BTreeMap<String, Global>,
+    /// The set of each index that runs over one set wherever it has one.
+    habits: BTreeMap<String, Expression>,
     locals: Vec<Local>,
     /// The smallest number of a local that was used since this was last set.
     lowest: usize,
@@ -169,6 +177,7 @@ impl<'t> Checker<'t> {
             symbols: Vec::new(),
             variables: Vec::new(),
             names: BTreeMap::new(),
+            habits: BTreeMap::new(),
             locals: Vec::new(),
             lowest: usize::MAX,
             next_slot: 0,

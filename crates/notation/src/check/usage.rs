@@ -50,7 +50,7 @@ pub(super) fn of_clause(clause: &Clause) -> impl Iterator<Item = &Expression> {
 }
 
 /// Every word in an expression.
-pub(super) fn words<'e>(expression: &'e Expression, found: &mut BTreeSet<&'e str>) {
+pub(crate) fn words<'e>(expression: &'e Expression, found: &mut BTreeSet<&'e str>) {
     if let Kind::Name(name) | Kind::Call(name, _) = &expression.kind {
         found.insert(&name.text);
     }

@@ -91,3 +91,7 @@ pub(crate) fn no_set(index: &str, span: Span) -> Diagnostic {
     )
     .mend(format!("write {} ∈ and its set", short(index)))
 }
+
+pub(crate) fn taken_for(name: &str, plain: &str, span: Span) -> Diagnostic {
+    Diagnostic::info("name.taken-for", span, format!("{name} is taken for {plain}"))
+}

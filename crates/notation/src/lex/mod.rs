@@ -1,23 +1,44 @@
 //! The lexer: text to tokens. It never fails; what it does not know becomes
 //! [`Kind::Unknown`], which the parser names in its message.
 
+mod foreign;
+mod macros;
+mod phrase;
 mod table;
 mod tex;
 pub(crate) mod token;
 
 use crate::place::Span;
+use macros::Macros;
 pub(crate) use table::letter_command;
 use token::{Gap, Kind, Token};
 
 /// All tokens of `text` from byte `start` on, ending with one of kind `End`. `O(bytes)`.
 pub(crate) fn lex(text: &str, start: usize) -> Vec<Token> {
-    lex_nested(text, start, 0)
+    lex_from(text, Start { at: start, ..Start::default() }, Macros::default()).0
 }
 
-/// The tokens of an argument that stands `depth` arguments deep.
-fn lex_nested(text: &str, start: usize, depth: u32) -> Vec<Token> {
-    let mut lexer =
-        Lexer { text, at: start, gap: Gap::default(), tokens: Vec::new(), environment: 0, depth };
+/// In what state a lexer begins.
+#[derive(Debug, Clone, Copy, Default)]
+struct Start {
+    at: usize,
+    /// How many arguments and macros it stands in.
+    depth: u32,
+    environment: u32,
+}
+
+/// The tokens of a text that may stand inside another, with the state that it leaves behind.
+fn lex_from(text: &str, from: Start, macros: Macros) -> (Vec<Token>, u32, Macros) {
+    let mut lexer = Lexer {
+        text,
+        at: from.at,
+        gap: Gap::default(),
+        tokens: Vec::new(),
+        environment: from.environment,
+        display: false,
+        depth: from.depth,
+        macros,
+    };
     lexer.gap.add(Gap::NEWLINE);
     while lexer.at < text.len() {
         let before = lexer.at;
@@ -27,7 +48,10 @@ fn lex_nested(text: &str, start: usize, depth: u32) -> Vec<Token> {
     lexer.gap.add(Gap::NEWLINE);
     lexer.push(Kind::End, text.len(), text.len());
     settle_braces(&mut lexer.tokens);
-    lexer.tokens
+    if from.depth == 0 {
+        settle_semicolons(&mut lexer.tokens, text);
+    }
+    (lexer.tokens, lexer.environment, lexer.macros)
 }
 
 struct Lexer<'t> {
@@ -37,7 +61,10 @@ struct Lexer<'t> {
     tokens: Vec<Token>,
     /// How many TeX environments are open, in which a line break ends nothing.
     environment: u32,
+    /// Whether `$$` has been opened.
+    display: bool,
     depth: u32,
+    macros: Macros,
 }
 
 impl Lexer<'_> {
@@ -63,20 +90,24 @@ impl Lexer<'_> {
     fn step(&mut self) {
         let Some(c) = self.rest().chars().next() else { return };
         match c {
-            ' ' | '\t' | '\n' | '\r' | '~' | '\u{a0}' | '\u{feff}' => self.white(),
+            _ if foreign::is_white(c) => self.white(),
             '#' | '%' => self.comment(),
-            '$' => self.at += 1,
+            '$' => self.dollar(),
+            '\'' | '′' | '’' => self.prime(c),
             '\\' => self.backslash(),
             '&' => self.ampersand(),
             '0'..='9' => self.number(),
             '.' if self.rest()[1..].starts_with(|d: char| d.is_ascii_digit()) => self.number(),
+            '.' if spaced_dots(self.rest()).is_some() => {
+                self.take(Kind::Dots, spaced_dots(self.rest()).unwrap_or(1));
+            }
             _ => self.sign_or_word(c),
         }
     }
 
     fn white(&mut self) {
         let rest = self.rest();
-        let length = rest.find(|c: char| !is_white(c)).unwrap_or(rest.len());
+        let length = rest.find(|c: char| !foreign::is_white(c)).unwrap_or(rest.len());
         let piece = &rest[..length];
         let lines = piece.bytes().filter(|&b| b == b'\n').count();
         let mut gap = Gap::SPACE;
@@ -104,6 +135,41 @@ impl Lexer<'_> {
         self.gap.add(Gap::QUAD);
         self.gap.add(Gap::SPACE);
         self.at += length;
+    }
+
+    /// `$` says nothing; what stands between two `$$` is displayed, and lines do not end there.
+    fn dollar(&mut self) {
+        if !self.rest().starts_with("$$") {
+            self.at += 1;
+            return;
+        }
+        self.display = !self.display;
+        self.displayed(self.display, 2);
+    }
+
+    /// A display begins or ends.
+    fn displayed(&mut self, begins: bool, length: usize) {
+        let start = self.at;
+        self.at += length;
+        self.environment =
+            if begins { self.environment + 1 } else { self.environment.saturating_sub(1) };
+        self.push_text(Kind::Break, start, self.at, "display".to_owned());
+    }
+
+    /// `x'` is a name; `x_i'` and `x_i^{\prime}` are the name `x'` with an index.
+    fn prime(&mut self, c: char) {
+        let (start, end) = (self.at, self.at + c.len_utf8());
+        self.at = end;
+        if let Some(last) = self.tokens.last_mut()
+            && last.kind == Kind::Word
+            && self.gap == Gap::default()
+        {
+            last.text.push('\'');
+            last.span.end = Span::new(start, end).end;
+            return;
+        }
+        self.push(Kind::Caret, start, end);
+        self.push_text(Kind::Word, start, end, "'".to_owned());
     }
 
     fn number(&mut self) {
@@ -177,16 +243,26 @@ impl Lexer<'_> {
 
     fn word(&mut self) {
         let start = self.at;
+        if let Some(length) = self.foreign_word() {
+            self.at += length;
+            return;
+        }
         let rest = self.rest();
         if let Some(length) = such_that_short(rest) {
             return self.take(Kind::SuchThat, length);
         }
         let belongs = |c: char| {
-            (c.is_alphabetic() && table::sign(c).is_none() && table::small(c).is_none())
+            (c.is_alphabetic()
+                && table::sign(c).is_none()
+                && table::small(c).is_none()
+                && foreign::plain(c).is_none())
                 || c.is_ascii_digit()
                 || c == '\''
         };
-        let length = rest.find(|c: char| !belongs(c)).unwrap_or(rest.len());
+        let mut length = rest.find(|c: char| !belongs(c)).unwrap_or(rest.len());
+        if self.is_index_alone(&rest[length..]) {
+            length = rest.chars().next().map_or(0, char::len_utf8);
+        }
         let word = &rest[..length];
         if let Some((kind, length)) = pair(word, rest) {
             return self.take(kind, length);
@@ -198,6 +274,7 @@ impl Lexer<'_> {
             "data" if line_start => Some(Kind::Data),
             "definitions" | "define" if line_start => Some(Kind::Definitions),
             "minimise" | "minimize" | "maximise" | "maximize" => table::word(&lower),
+            "min" | "max" if line_start => table::word(&lower),
             _ => table::word(word),
         };
         match kind {
@@ -211,8 +288,53 @@ impl Lexer<'_> {
     }
 }
 
-fn is_white(c: char) -> bool {
-    matches!(c, ' ' | '\t' | '\n' | '\r' | '~' | '\u{a0}' | '\u{feff}')
+/// The length of `. . .` at the start of `rest`.
+fn spaced_dots(rest: &str) -> Option<usize> {
+    let mut at = 0;
+    for _ in 0..3 {
+        let dot = rest[at..].strip_prefix('.')?;
+        at = rest.len() - dot.trim_start_matches(foreign::is_white).len();
+    }
+    Some(rest[..at].trim_end_matches(foreign::is_white).len())
+}
+
+impl Lexer<'_> {
+    /// Whether `_` or `^` before a word takes its first letter alone, as in TeX: `f_iy_i`. In
+    /// plain text `x_ij` has two indices.
+    fn is_index_alone(&self, after: &str) -> bool {
+        let raised = self.tokens.last().map(|t| t.kind);
+        let raised = matches!(raised, Some(Kind::Underscore | Kind::Caret));
+        let follows = after.starts_with(['_', '^']);
+        raised && self.gap == Gap::default() && (self.environment > 0 || follows)
+    }
+
+    /// A letter with an accent after it or from another alphabet, as a name; its length.
+    fn foreign_word(&mut self) -> Option<usize> {
+        let mut chars = self.rest().chars();
+        let first = chars.next()?;
+        let length = first.len_utf8();
+        let start = self.at;
+        if let Some(letter) = foreign::script(first) {
+            let text = format!("\\mathcal {letter}");
+            self.push_text(Kind::Word, start, start + length, text);
+            return Some(length);
+        }
+        let plain = foreign::plain(first);
+        let next = chars.next();
+        if let Some(accent) = next.and_then(foreign::accent) {
+            let length = length + next.map_or(0, char::len_utf8);
+            let text = format!("\\{accent} {}", plain.unwrap_or(first));
+            self.push_text(Kind::Word, start, start + length, text);
+            return Some(length);
+        }
+        let plain = plain?;
+        if plain.is_ascii_digit() {
+            self.push_text(Kind::Number, start, start + length, plain.to_string());
+        } else {
+            self.push_text(Kind::Word, start, start + length, plain.to_string());
+        }
+        Some(length)
+    }
 }
 
 /// The length of `s.t.` and its variants at the start of `rest`.
@@ -279,6 +401,57 @@ fn settle_braces(tokens: &mut Vec<Token>) {
         out.push(token);
     }
     *tokens = out;
+}
+
+/// A semicolon inside brackets, or between the parts of a quantifier
+/// (`i = 1,…,n; j = 1,…,m`), is a comma.
+fn settle_semicolons(tokens: &mut [Token], text: &str) {
+    let mut depth = 0_u32;
+    let mut quantified = false;
+    for i in 0..tokens.len() {
+        let kind = tokens[i].kind;
+        if kind.opens() {
+            depth += 1;
+        } else if kind.closes() {
+            depth = depth.saturating_sub(1);
+        }
+        quantified |= matches!(kind, Kind::ForAll | Kind::Dots);
+        if kind != Kind::Break {
+            continue;
+        }
+        let semicolon = tokens[i].span.of(text) == ";";
+        if semicolon && (depth > 0 || quantified && goes_on(&tokens[i + 1..])) {
+            tokens[i].kind = Kind::Comma;
+        } else {
+            depth = if semicolon { depth } else { 0 };
+            quantified = false;
+        }
+    }
+}
+
+/// Whether what follows a semicolon on the same line goes on with a quantifier.
+fn goes_on(rest: &[Token]) -> bool {
+    let Some(first) = rest.first() else { return false };
+    if first.gap.has(Gap::NEWLINE) {
+        return false;
+    }
+    if first.kind == Kind::ForAll {
+        return true;
+    }
+    let after = match first.kind {
+        Kind::Word => 1,
+        Kind::LeftParen => rest.iter().position(|t| t.kind == Kind::RightParen).unwrap_or(0) + 1,
+        _ => return false,
+    };
+    let line = || rest.iter().take_while(|t| t.kind != Kind::Break);
+    match rest.get(after).map(|t| t.kind) {
+        Some(Kind::Equal) => line().any(|t| t.kind == Kind::Dots),
+        Some(Kind::In) => {
+            let set = rest.get(after + 1).map(|t| t.kind);
+            set == Some(Kind::Word) || line().any(|t| t.kind == Kind::Dots)
+        }
+        _ => false,
+    }
 }
 
 #[cfg(test)]

@@ -6,8 +6,8 @@ use super::token::Kind;
 pub(super) fn sign(c: char) -> Option<Kind> {
     Some(match c {
         '+' => Kind::Plus,
-        '-' | '−' | '–' => Kind::Minus,
-        '*' | '·' | '⋅' | '∗' => Kind::Dot,
+        '-' | '−' | '–' | '‐' | '‑' | '‒' | '﹣' => Kind::Minus,
+        '*' | '·' | '⋅' | '∗' | '⋆' => Kind::Dot,
         '×' => Kind::Cross,
         '/' | '∕' | '÷' => Kind::Slash,
         '^' => Kind::Caret,
@@ -15,9 +15,9 @@ pub(super) fn sign(c: char) -> Option<Kind> {
         '=' | '≔' => Kind::Equal,
         '≠' => Kind::NotEqual,
         '<' => Kind::Less,
-        '≤' | '⩽' => Kind::AtMost,
+        '≤' | '⩽' | '≦' => Kind::AtMost,
         '>' => Kind::Greater,
-        '≥' | '⩾' => Kind::AtLeast,
+        '≥' | '⩾' | '≧' => Kind::AtLeast,
         '∈' => Kind::In,
         '∉' => Kind::NotIn,
         '⊂' | '⊊' => Kind::Subset,
@@ -32,7 +32,7 @@ pub(super) fn sign(c: char) -> Option<Kind> {
         '∀' => Kind::ForAll,
         'Σ' | '∑' => Kind::Sum,
         '∏' | 'Π' => Kind::Product,
-        ':' | '∣' => Kind::Colon,
+        ':' | '∣' | '∶' => Kind::Colon,
         ',' => Kind::Comma,
         '.' => Kind::Period,
         ';' => Kind::Break,
@@ -113,6 +113,7 @@ pub(super) const WORD_PAIRS: &[(&str, &str, Kind)] = &[
     ("for", "all", Kind::ForAll),
     ("for", "each", Kind::ForAll),
     ("for", "every", Kind::ForAll),
+    ("for", "any", Kind::ForAll),
     ("not", "in", Kind::NotIn),
 ];
 
@@ -124,10 +125,10 @@ pub(super) fn command(name: &str) -> Option<Kind> {
         "forall" => Kind::ForAll,
         "in" => Kind::In,
         "notin" => Kind::NotIn,
-        "subset" | "subsetneq" | "subsetneqq" => Kind::Subset,
+        "subset" | "subsetneq" | "subsetneqq" | "varsubsetneq" => Kind::Subset,
         "subseteq" | "subseteqq" => Kind::SubsetOrEqual,
-        "le" | "leq" | "leqslant" => Kind::AtMost,
-        "ge" | "geq" | "geqslant" => Kind::AtLeast,
+        "le" | "leq" | "leqslant" | "leqq" => Kind::AtMost,
+        "ge" | "geq" | "geqslant" | "geqq" => Kind::AtLeast,
         "lt" => Kind::Less,
         "gt" => Kind::Greater,
         "ne" | "neq" => Kind::NotEqual,
@@ -137,13 +138,13 @@ pub(super) fn command(name: &str) -> Option<Kind> {
         "cap" => Kind::Intersection,
         "setminus" | "smallsetminus" | "backslash" => Kind::Difference,
         "times" => Kind::Cross,
-        "cdot" | "ast" => Kind::Dot,
+        "cdot" | "ast" | "star" => Kind::Dot,
         "div" => Kind::Slash,
         "land" | "wedge" => Kind::And,
         "lor" | "vee" => Kind::Or,
         "lnot" | "neg" => Kind::Not,
         "mid" | "colon" => Kind::Colon,
-        "ldots" | "dots" | "cdots" | "dotsc" => Kind::Dots,
+        "ldots" | "dots" | "cdots" | "dotsc" | "dotsb" | "hdots" | "dotso" => Kind::Dots,
         "lfloor" => Kind::LeftFloor,
         "rfloor" => Kind::RightFloor,
         "lceil" => Kind::LeftCeiling,
@@ -155,45 +156,55 @@ pub(super) fn command(name: &str) -> Option<Kind> {
         "infty" => Kind::Infinity,
         "min" => Kind::Min,
         "max" => Kind::Max,
-        "frac" | "tfrac" | "dfrac" => Kind::Fraction,
+        "frac" | "tfrac" | "dfrac" | "nicefrac" | "sfrac" | "cfrac" => Kind::Fraction,
+        "lbrack" => Kind::LeftBracket,
+        "rbrack" => Kind::RightBracket,
+        "coloneqq" | "triangleq" | "doteq" => Kind::Equal,
+        "R" | "Re" | "reals" | "RR" => Kind::Reals,
+        "Z" | "ZZ" | "integers" => Kind::Integers,
+        "N" | "NN" | "naturals" => Kind::Naturals,
+        "B" | "BB" => Kind::Binaries,
         _ => return None,
     })
 }
 
 /// TeX commands that say nothing about the model.
 pub(super) fn vanishes(name: &str) -> bool {
-    matches!(
-        name,
-        "left"
-            | "right"
-            | "big"
-            | "Big"
-            | "bigl"
-            | "bigr"
-            | "Bigl"
-            | "Bigr"
-            | "bigg"
-            | "Bigg"
-            | "biggl"
-            | "biggr"
-            | "nonumber"
-            | "notag"
-            | "limits"
-            | "nolimits"
-            | "displaystyle"
-            | "textstyle"
-            | "scriptstyle"
-            | "hfill"
-            | "null"
-            | "noindent"
-            | "centering"
-            | "hline"
-    )
+    VANISHING.split(' ').any(|one| one == name)
 }
+
+const VANISHING: &str = "big Big bigl bigr Bigl Bigr bigg Bigg biggl biggr nonumber notag limits nolimits \
+    displaystyle textstyle scriptstyle thinspace medspace thickspace negthinspace \
+    null noindent centering hline bigm Bigm biggm Biggm Biggl Biggr middle \
+    mathopen mathclose mathbin mathrel mathord mathstrut strut displaylimits \
+    scriptscriptstyle allowbreak allowdisplaybreaks smallskip medskip bigskip \
+    small footnotesize normalsize par relax protect boldmath IEEEnonumber \
+    IEEEyesnumber IEEEyessubnumber toprule midrule bottomrule";
 
 /// TeX commands that only make space.
 pub(super) fn spaces(name: &str) -> bool {
-    matches!(name, "quad" | "qquad" | "hskip" | "enspace" | "thinspace")
+    matches!(name, "quad" | "qquad" | "enspace" | "enskip" | "hfil" | "hfill")
+}
+
+/// TeX commands that say nothing, with so many arguments.
+pub(super) fn dropped(name: &str) -> Option<u8> {
+    Some(match name {
+        "label" | "hspace" | "vspace" | "phantom" | "hphantom" | "vphantom" | "ref" | "eqref"
+        | "cite" | "index" | "footnote" | "color" | "section" | "subsection" | "paragraph"
+        | "caption" | "mspace" | "cline" | "usepackage" | "documentclass" => 1,
+        "setlength" | "addtolength" | "rule" | "setcounter" => 2,
+        _ => return None,
+    })
+}
+
+/// TeX commands that only say how their last argument is set: how many stand before it.
+pub(super) fn sets_last(name: &str) -> Option<u8> {
+    Some(match name {
+        "mathop" | "ensuremath" | "boxed" | "fbox" | "smash" | "mathclap" | "mathrlap"
+        | "mathllap" | "displaylines" | "mathchoice" => 0,
+        "textcolor" | "overset" | "colorbox" => 1,
+        _ => return None,
+    })
 }
 
 /// Greek letters and a few others with their TeX commands, the usual one first.
@@ -234,6 +245,9 @@ const LETTERS: &[(&str, &str)] = &[
     ("Psi", "Ψ"),
     ("Omega", "Ω"),
     ("ell", "ℓ"),
+    ("imath", "ı"),
+    ("jmath", "ȷ"),
+    ("prime", "'"),
 ];
 
 /// A letter that stands for a TeX command, as a name.

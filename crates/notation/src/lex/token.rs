@@ -105,6 +105,11 @@ impl Gap {
     pub(crate) fn add(&mut self, other: Self) {
         self.0 |= other.0;
     }
+
+    /// The same without line breaks.
+    pub(super) fn without_lines(self) -> Self {
+        Self(self.0 & !(Self::NEWLINE.0 | Self::BLANK_LINE.0))
+    }
 }
 
 /// A token with its place.

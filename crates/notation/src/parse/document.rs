@@ -6,7 +6,7 @@ use crate::latex::unescaped;
 use crate::lex::lex;
 use crate::lex::token::{Gap, Kind as T};
 use crate::place::Span;
-use crate::syntax::{Formulation, Objective, Section, Unread};
+use crate::syntax::{Expression, Formulation, Kind, Line, Objective, Section, Unread};
 
 /// The title, if the first line that holds anything is one, and the byte where the rest begins.
 pub(super) fn title(text: &str) -> (Option<String>, usize) {
@@ -27,13 +27,21 @@ pub(super) fn title(text: &str) -> (Option<String>, usize) {
 
 /// Whether a line holds no relation, part word or TeX environment.
 pub(crate) fn is_title(line: &str) -> bool {
-    if line.starts_with("$$") || line.starts_with("\\[") || line.contains("\\begin") {
+    let mathematics = ["$$", "\\[", "\\newcommand", "\\renewcommand", "\\def", "\\DeclareMath"];
+    if mathematics.iter().any(|one| line.starts_with(one)) || line.contains("\\begin") {
         return false;
     }
     let tokens = lex(line, 0);
     let opens_part =
         |kind: T| kind.is_part() || matches!(kind, T::SuchThat | T::Min | T::Max | T::Text);
-    let first_opens = tokens.first().is_some_and(|t| opens_part(t.kind));
+    // "Max cut" and "Min-cost flow" are titles, "max z" is none
+    let sense = tokens.first().is_some_and(|t| matches!(t.kind, T::Min | T::Max));
+    let words = |t: &crate::lex::token::Token| {
+        matches!(t.kind, T::Word | T::Minus | T::Comma | T::End | T::LeftParen | T::RightParen)
+            && t.text.chars().count() != 1
+    };
+    let named = sense && tokens.len() > 2 && tokens[1..].iter().all(words);
+    let first_opens = !named && tokens.first().is_some_and(|t| opens_part(t.kind));
     let strict = |kind: T| kind.is_relation() && kind != T::In;
     let inside =
         |kind: T| strict(kind) || matches!(kind, T::SubjectTo | T::Sum | T::Minimise | T::Maximise);
@@ -86,12 +94,55 @@ impl Parser<'_> {
                 part = next;
             } else if matches!(self.peek(), T::Break | T::Comma | T::Period) {
                 self.bump();
+            } else if let Some(at) = self.objective_by_name(part) {
+                self.at = at;
             } else {
+                if self.skip_lone_tag() {
+                    continue;
+                }
+                if matches!(part, Part::Objective { .. }) && tree.objective.is_some() {
+                    part = self.part_after_objective(part);
+                }
                 self.line_of(part, &mut tree);
             }
             debug_assert!(self.at > before, "the parser must move on");
         }
         tree
+    }
+
+    /// `\\tag{P}` alone on a line numbers the whole display.
+    fn skip_lone_tag(&mut self) -> bool {
+        let next = self.tokens.get(self.at + 1).map(|t| t.kind);
+        let alone = self.peek() == T::Tag
+            && next.is_none_or(|kind| kind == T::Break || kind == T::End || kind.is_part());
+        self.at += usize::from(alone);
+        alone
+    }
+
+    /// The place of the objective's word behind its name (`Z = \\min`), at the start of a display.
+    fn objective_by_name(&self, part: Part) -> Option<usize> {
+        let display = self.at > 0 && {
+            let before = &self.tokens[self.at - 1];
+            before.kind == T::Break && !before.text.is_empty()
+        };
+        let open = part == Part::None || matches!(part, Part::Data | Part::Definitions) && display;
+        if open { self.named_objective() } else { None }
+    }
+
+    /// A line with a relation behind the objective is a constraint, "subject to" or not.
+    fn part_after_objective(&mut self, part: Part) -> Part {
+        let (end, _) = self.scan();
+        let mut depth = 0_u32;
+        for token in &self.tokens[self.at..end] {
+            if token.kind.opens() {
+                depth += 1;
+            } else if token.kind.closes() {
+                depth = depth.saturating_sub(1);
+            } else if depth == 0 && token.kind.is_relation() {
+                return Part::Statements;
+            }
+        }
+        part
     }
 
     /// A word that opens a part, at the start of a line.
@@ -100,6 +151,7 @@ impl Parser<'_> {
         // in the other parts `min(a, b)` and `min_{i ∈ V} a_i` are numbers
         let opens = matches!(self.ahead(1), T::LeftParen | T::LeftBrace | T::Underscore);
         let function = opens && matches!(part, Part::Definitions | Part::Statements);
+        let function = function && !self.names_variables();
         if function && matches!(self.peek(), T::Min | T::Max) {
             return None;
         }
@@ -112,16 +164,22 @@ impl Parser<'_> {
             _ => return None,
         };
         self.bump();
+        if matches!(part, Part::Objective { .. }) {
+            self.skip_variables();
+            self.open_set_form();
+        }
         self.eat(T::Colon);
         Some(part)
     }
 
     fn line_of(&mut self, part: Part, tree: &mut Formulation) {
         let first = self.at;
+        self.in_statements = part == Part::Statements;
         let described = matches!(part, Part::Data | Part::Definitions);
         let (end, after) =
             if described { self.scan_described(part == Part::Data) } else { self.scan() };
         self.end = end;
+        self.first = first;
         self.place = Surroundings { wide_ends: part == Part::Data, ..Surroundings::default() };
         let span = self.tokens[first].span.to(self.tokens[after.max(first + 1) - 1].span);
         let read = self.part_line(part, tree, after, span);
@@ -152,13 +210,18 @@ impl Parser<'_> {
                 return None;
             }
             Part::Data => {
+                if self.is_only_a_name_in_brackets() {
+                    return Some(());
+                }
                 let mut line = self.data_line().ok()?;
                 line.remark = self.remark(after);
+                self.note(&line);
                 tree.data.push(line);
             }
             Part::Definitions => {
                 let mut line = self.data_line().ok()?;
                 line.remark = self.remark(after);
+                self.note(&line);
                 tree.definitions.push(line);
             }
             Part::Objective { maximise, start } => {
@@ -172,9 +235,35 @@ impl Parser<'_> {
                     None => tree.objective = Some(objective),
                 }
             }
-            Part::Statements => tree.statements.push(self.statement().ok()?),
+            Part::Statements => {
+                let lines = self.statements().ok()?;
+                tree.statements.extend(lines);
+                tree.definitions.append(&mut self.passing);
+            }
         }
         Some(())
+    }
+
+    /// `(CFLP)` alone on a line names the model.
+    fn is_only_a_name_in_brackets(&self) -> bool {
+        self.peek() == T::LeftParen
+            && self.closing(self.at).is_some_and(|close| close + 1 == self.end)
+            && self.tokens[self.at..self.end].iter().all(|t| !t.kind.is_relation())
+    }
+
+    /// Remembers what a line of data or definitions declares.
+    fn note(&mut self, line: &Line) {
+        let mut work: Vec<&Expression> = line.left.iter().collect();
+        while let Some(expression) = work.pop() {
+            match &expression.kind {
+                Kind::Name(name) => {
+                    self.declared.insert(name.text.clone());
+                }
+                Kind::Interval(a, b) => work.extend([a.as_ref(), b.as_ref()]),
+                Kind::Tuple(items) => work.extend(items),
+                _ => {}
+            }
+        }
     }
 
     /// The text from the end of what was read to the end of the line.
@@ -224,7 +313,13 @@ impl Parser<'_> {
     }
 
     fn on_new_line(&self, i: usize) -> bool {
-        self.tokens[i].gap.has(Gap::NEWLINE) && !self.tokens[i - 1].kind.continues()
+        self.tokens[i].gap.has(Gap::NEWLINE) && !self.goes_on(i - 1)
+    }
+
+    /// Whether a token at the end of a line goes on with the next one; the `+` of `ℝ_+` does not.
+    fn goes_on(&self, i: usize) -> bool {
+        let raised = i > 0 && matches!(self.tokens[i - 1].kind, T::Underscore | T::Caret);
+        self.tokens[i].kind.continues() && !raised
     }
 
     fn line_ends_before(&self, i: usize, depth: u32, quantified: bool) -> bool {
@@ -236,10 +331,11 @@ impl Parser<'_> {
             return true;
         }
         let line_break = token.gap.has(Gap::NEWLINE);
-        if token.kind == T::SuchThat && (line_break || !quantified) && depth == 0 {
+        let opens = line_break || !quantified && !self.in_statements;
+        if token.kind == T::SuchThat && opens && depth == 0 {
             return true;
         }
-        if !line_break || depth > 0 || self.tokens[i - 1].kind.continues() {
+        if !line_break || depth > 0 || self.goes_on(i - 1) {
             return false;
         }
         // nothing is added to what stands behind a quantifier

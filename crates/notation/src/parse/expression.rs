@@ -3,7 +3,7 @@
 use super::line::relation;
 use super::{Parser, Read};
 use crate::lex::token::{Gap, Kind as T};
-use crate::syntax::{Additive, Expression, Kind, Multiplicative};
+use crate::syntax::{Additive, Expression, Kind, Multiplicative, Relation};
 
 impl Parser<'_> {
     pub(super) fn make(&self, kind: Kind, start: crate::place::Span) -> Expression {
@@ -68,10 +68,21 @@ impl Parser<'_> {
             self.bump();
             links.push((relation, self.range()?));
         }
-        if links.is_empty() {
-            return Ok(first);
-        }
-        Ok(self.make(Kind::Chain(Box::new(first), links), start))
+        let first = match links.first() {
+            Some((Relation::In, _)) => pair_of_edge(first),
+            None => return Ok(first),
+            _ => first,
+        };
+        let odd = match self.peek() {
+            T::Odd => true,
+            T::Even => false,
+            _ => return Ok(self.make(Kind::Chain(Box::new(first), links), start)),
+        };
+        // |S| ≥ 3 odd
+        let chain = self.make(Kind::Chain(Box::new(first.clone()), links), start);
+        self.bump();
+        let parity = self.make(Kind::Parity(Box::new(first), odd), start);
+        Ok(self.make(Kind::All(vec![chain, parity]), start))
     }
 
     fn clique(&mut self, first: Expression, start: crate::place::Span) -> Read<Expression> {
@@ -95,8 +106,7 @@ impl Parser<'_> {
         }
         let parts = vec![(Multiplicative::Modulo, modulus)];
         let left = self.make(Kind::Multiplicative(Box::new(first), parts), start);
-        Ok(self
-            .make(Kind::Chain(Box::new(left), vec![(crate::syntax::Relation::Equal, rest)]), start))
+        Ok(self.make(Kind::Chain(Box::new(left), vec![(Relation::Equal, rest)]), start))
     }
 
     /// `a..b`.
@@ -173,6 +183,9 @@ impl Parser<'_> {
         {
             return false;
         }
+        if self.at_number_word() || self.place.quad_ends && self.at_bracketed_clause() {
+            return false;
+        }
         match self.peek() {
             T::Bar => !self.place.bars && !self.place.bar_separates,
             T::Word
@@ -206,8 +219,24 @@ impl Parser<'_> {
         let base = self.primary()?;
         if self.eat(T::Caret) {
             let exponent = self.grouped(Self::additive)?;
+            // {0,1}^n, ℝ^n: how many there are is told by the indices
+            if matches!(base.kind, Kind::Set(_) | Kind::Interval(..) | Kind::NumberSet(_)) {
+                return Ok(base);
+            }
             return Ok(self.make(Kind::Power(Box::new(base), Box::new(exponent)), start));
         }
         Ok(base)
+    }
+}
+
+/// `{i,j} ∈ E` is `(i,j) ∈ E`.
+fn pair_of_edge(left: Expression) -> Expression {
+    match left.kind {
+        Kind::Set(items)
+            if items.len() > 1 && items.iter().all(|i| matches!(i.kind, Kind::Name(_))) =>
+        {
+            Expression { kind: Kind::Tuple(items), span: left.span }
+        }
+        _ => left,
     }
 }

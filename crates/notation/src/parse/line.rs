@@ -4,7 +4,7 @@ use super::{Parser, Read};
 use crate::diagnostic::syntax as message;
 use crate::lex::token::{Gap, Kind as T};
 use crate::place::Span;
-use crate::syntax::{Expression, Kind, Label, Line, NumberSet, Relation};
+use crate::syntax::{Expression, Kind, Label, Line, Relation};
 
 /// The relations of a line, each with its right operand.
 type Links = Vec<(Relation, Expression)>;
@@ -46,8 +46,8 @@ impl Parser<'_> {
         }
     }
 
-    pub(super) fn statement(&mut self) -> Read<Line> {
-        let label = self.label();
+    /// One statement; `x ≥ 0 and integer` is two.
+    pub(super) fn one_statement(&mut self) -> Read<Vec<Line>> {
         let start = self.here();
         let (left, links) = self.operands()?;
         if links.is_empty() {
@@ -60,13 +60,22 @@ impl Parser<'_> {
             });
         }
         let clauses = self.clauses()?;
-        self.stray_punctuation();
-        if self.peek() != T::End {
-            return Err(self.expected("an operator, a quantifier or the end of the line"));
-        }
         let span = self.since(start);
-        let span = label.as_ref().map_or(span, |l| span.to(l.span));
-        Ok(Line { left, links, clauses, label, remark: None, span })
+        let line = |links| Line {
+            left: left.clone(),
+            links,
+            clauses: clauses.clone(),
+            label: None,
+            remark: None,
+            span,
+        };
+        let worded = |link: &(Relation, Expression)| matches!(link.1.kind, Kind::NumberSet(_));
+        let named = left.iter().all(|e| matches!(e.kind, Kind::Name(_)));
+        if named && links.len() > 1 && worded(&links[links.len() - 1]) {
+            let (before, last) = links.split_at(links.len() - 1);
+            return Ok(vec![line(before.to_vec()), line(last.to_vec())]);
+        }
+        Ok(vec![line(links)])
     }
 
     fn stray_punctuation(&mut self) {
@@ -95,20 +104,17 @@ impl Parser<'_> {
 
     /// A relation with its right operand; `free` is `∈ ℝ`.
     pub(super) fn link(&mut self) -> Read<Option<(Relation, Expression)>> {
-        let span = self.here();
-        if self.eat(T::Free) {
-            return Ok(Some((
-                Relation::In,
-                Expression { kind: Kind::NumberSet(NumberSet::Real), span },
-            )));
+        if let Some(domain) = self.domain_in_words() {
+            return Ok(Some(domain));
         }
         let Some(relation) = relation(self.peek()) else { return Ok(None) };
         self.bump();
-        Ok(Some((relation, self.range()?)))
+        let operand = self.range()?;
+        self.zero_or_one(relation, operand).map(Some)
     }
 
     /// Takes the label off the end of the line.
-    fn label(&mut self) -> Option<Label> {
+    pub(super) fn label(&mut self) -> Option<Label> {
         let tagged = self.tagged_label();
         let written = self.bracketed_label();
         tagged.or(written)
@@ -145,8 +151,8 @@ impl Parser<'_> {
             return None;
         }
         let span = Span { start: self.tokens[open].span.start, end: self.tokens[last].span.end };
-        let text = span.of(self.text);
-        let inner = text[1..text.len() - 1].trim();
+        let inner = span.of(self.text).strip_prefix('(').and_then(|t| t.strip_suffix(')'));
+        let inner = inner?.trim();
         let apart = gap.has(Gap::WIDE) || gap.has(Gap::NEWLINE) || gap.has(Gap::QUAD);
         let quantified = self.tokens[self.at..open].iter().any(|t| t.kind == T::ForAll);
         let sure = apart && quantified && is_plain(inner);

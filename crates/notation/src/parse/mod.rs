@@ -1,21 +1,27 @@
 //! The parser: tokens to a tree, by recursive descent. It never fails: a line that cannot be
 //! read gives a diagnostic with its place and is skipped to its end.
 
+mod compound;
 mod document;
 mod expression;
 mod line;
 mod name;
 mod number;
+mod opening;
+mod plain_sum;
 mod primary;
 mod quantifier;
+mod words;
 
+pub(crate) use compound::needed;
 pub(crate) use document::is_title;
 
 use crate::diagnostic::{Diagnostic, syntax as message, tidy};
 use crate::lex::lex;
 use crate::lex::token::{Gap, Kind as T, Token};
 use crate::place::Span;
-use crate::syntax::Formulation;
+use crate::syntax::{Formulation, Line};
+use std::collections::BTreeSet;
 
 /// How deep brackets, sums and powers may nest.
 pub const NESTING_LIMIT: u32 = 100;
@@ -48,6 +54,10 @@ pub fn parse(text: &str) -> Parse {
         end: 0,
         depth: 0,
         place: Surroundings::default(),
+        first: 0,
+        in_statements: false,
+        declared: BTreeSet::new(),
+        passing: Vec::new(),
         diagnostics: Vec::new(),
     };
     let mut tree = parser.document();
@@ -78,6 +88,8 @@ struct Surroundings {
     wide_ends: bool,
     /// In a set: a bar separates, as a colon does.
     bar_separates: bool,
+    /// In a statement, outside brackets: another statement may follow on the line.
+    splits: bool,
 }
 
 struct Parser<'t> {
@@ -88,6 +100,13 @@ struct Parser<'t> {
     end: usize,
     depth: u32,
     place: Surroundings,
+    /// Where the line at hand begins.
+    first: usize,
+    in_statements: bool,
+    /// The names that data and definitions declare.
+    declared: BTreeSet<String>,
+    /// Sets that a quantifier defines in passing: `i ∈ M = {1,…,m}`.
+    passing: Vec<Line>,
     diagnostics: Vec<Diagnostic>,
 }
 

@@ -52,17 +52,39 @@ impl Parser<'_> {
 
     fn superscript(&mut self, name: &mut Name) -> Read<()> {
         if let Some(decoration) = self.decoration() {
-            name.text.push('^');
+            if decoration != "'" {
+                name.text.push('^');
+            }
             name.text.push_str(&decoration);
             return Ok(());
         }
-        name.superscript = Some(Box::new(self.grouped(Self::additive)?));
+        let start = self.here();
+        let mut items = if self.peek() == T::LeftBrace {
+            self.grouped(Self::items)?
+        } else {
+            vec![self.grouped(Self::additive)?]
+        };
+        name.superscript = Some(Box::new(match items.len() {
+            1 => items.remove(0),
+            _ => self.make(Kind::Tuple(items), start),
+        }));
         Ok(())
     }
 
     /// What belongs to a name: `\max`, `\text{in}`, `+`, alone in the group.
     fn decoration(&mut self) -> Option<String> {
         let braced = usize::from(self.peek() == T::LeftBrace);
+        let prime = |by: usize| {
+            let token = self.tokens.get(self.at + by).filter(|_| self.at + by < self.end);
+            token.is_some_and(|t| t.kind == T::Word && t.text.chars().all(|c| c == '\''))
+        };
+        if prime(braced) {
+            let count = (braced..).take_while(|by| prime(*by)).count();
+            let text: String =
+                (0..count).map(|k| self.tokens[self.at + braced + k].text.as_str()).collect();
+            self.at += count + 2 * braced;
+            return Some(text);
+        }
         if braced == 1 && self.ahead(2) != T::RightBrace {
             return None;
         }
@@ -77,6 +99,15 @@ impl Parser<'_> {
         };
         self.at += 1 + 2 * braced;
         Some(text)
+    }
+
+    /// A word alone, without what hangs on it.
+    pub(super) fn bare_word(&mut self) -> Expression {
+        let start = self.here();
+        let text = self.tokens[self.at].text.clone();
+        self.bump();
+        let name = Name { text, indices: Vec::new(), superscript: None };
+        self.make(Kind::Name(name), start)
     }
 
     /// A list of expressions up to a closing bracket.

@@ -164,30 +164,37 @@ impl Parser<'_> {
         let kind = self.peek();
         self.bump();
         let mut sign = None;
-        if matches!(self.peek(), T::Underscore | T::Caret) {
-            self.bump();
-            let end = self.end;
-            let from = self.at;
-            let braced = self.eat(T::LeftBrace);
-            let signs = [self.peek(), self.ahead(1)];
-            sign = Some(match signs {
-                [T::Plus, _] => T::Plus,
-                [T::AtLeast, T::Number] => T::AtLeast,
-                [T::Greater, T::Number] => T::Greater,
-                [T::Number, _] if kind == T::Naturals => T::Number,
-                _ => return Err(self.expected("“+”, “≥0” or “>0”")),
-            });
-            self.at += if matches!(sign, Some(T::AtLeast | T::Greater)) { 2 } else { 1 };
-            if braced {
-                self.expect(T::RightBrace, "“}”")?;
+        while matches!(self.peek(), T::Underscore | T::Caret) {
+            let braced = usize::from(self.ahead(1) == T::LeftBrace);
+            let [first, second] = [self.ahead(1 + braced), self.ahead(2 + braced)];
+            let found = match [first, second] {
+                [T::Plus, _] => Some(T::Plus),
+                [T::AtLeast | T::Greater, T::Number] => Some(first),
+                [T::Number, _] if kind == T::Naturals => Some(T::Number),
+                _ => None,
+            };
+            let raised = self.peek() == T::Caret;
+            let close = if braced == 1 { self.closing(self.at + 1) } else { Some(self.at + 1) };
+            let Some(close) = close.filter(|close| *close < self.end) else {
+                return Err(self.expected("“+”, “≥0” or “>0”"));
+            };
+            if found.is_none() && !raised {
+                self.bump();
+                return Err(self.expected("“+”, “≥0” or “>0”"));
             }
-            debug_assert!(self.at > from && self.at <= end);
-            let number = &self.tokens[self.at - 1 - usize::from(braced)];
-            let text =
-                if number.text.is_empty() { number.span.of(self.text) } else { &number.text };
-            if number.kind == T::Number && text != "0" {
-                return Err(self.expected("0 as the bound"));
+            if matches!(found, Some(T::AtLeast | T::Greater | T::Number)) {
+                let at = self.at + 1 + braced + usize::from(found != Some(T::Number));
+                let token = &self.tokens[at];
+                let text =
+                    if token.text.is_empty() { token.span.of(self.text) } else { &token.text };
+                if text != "0" {
+                    self.at = at;
+                    return Err(self.expected("0 as the bound"));
+                }
             }
+            // a dimension (ℝ^n) says nothing that the indices do not say
+            sign = found.or(sign);
+            self.at = close + 1;
         }
         let set = match (kind, sign) {
             (T::Binaries, None) => NumberSet::Binary,

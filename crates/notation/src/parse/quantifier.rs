@@ -3,7 +3,7 @@
 use super::{Parser, Read, Surroundings};
 use crate::diagnostic::syntax as message;
 use crate::lex::token::{Gap, Kind as T};
-use crate::syntax::{Clause, Expression, Kind, Relation};
+use crate::syntax::{Clause, Expression, Kind, Line, Relation};
 use model::Number;
 
 impl Parser<'_> {
@@ -13,25 +13,65 @@ impl Parser<'_> {
         let place = Surroundings { quad_ends: true, ..self.place };
         loop {
             let before = self.at;
-            let comma = self.eat(T::Comma);
-            let all = self.eat(T::ForAll);
-            let quad = self.gap().has(Gap::QUAD);
-            if matches!(self.peek(), T::End | T::Period) || !(comma || all || quad) {
+            let comma = usize::from(self.peek() == T::Comma);
+            if self.statement_at(self.at + comma) {
                 return Ok(clauses);
             }
-            clauses.push(self.within(place, Self::clause)?);
+            self.at += comma;
+            let all = self.eat(T::ForAll);
+            let quad = self.gap().has(Gap::QUAD);
+            let condition = self.peek() == T::SuchThat;
+            let bracketed = self.at_bracketed_clause();
+            let opens = comma == 1 || all || quad || condition || bracketed;
+            if matches!(self.peek(), T::End | T::Period) || !opens {
+                return Ok(clauses);
+            }
+            if condition || bracketed {
+                self.bump();
+            }
+            let inner = if bracketed { Surroundings::default() } else { place };
+            clauses.push(self.within(inner, Self::clause)?);
+            if bracketed {
+                self.expect(T::RightParen, "“)”")?;
+            }
             debug_assert!(self.at > before, "a clause must move on");
         }
+    }
+
+    /// Whether a whole quantifier in brackets stands here: `(i ∈ I; j ∈ J)`, not `(i,j) ∈ A`.
+    pub(super) fn at_bracketed_clause(&self) -> bool {
+        if self.peek() != T::LeftParen {
+            return false;
+        }
+        let mut depth = 0_u32;
+        for token in &self.tokens[self.at..self.end] {
+            if token.kind.opens() {
+                depth += 1;
+            } else if token.kind.closes() {
+                depth = depth.saturating_sub(1);
+            }
+            let binds = token.kind.is_relation() || matches!(token.kind, T::Dots | T::ForAll);
+            if depth == 1 && binds {
+                return true;
+            }
+            if depth == 0 {
+                return false;
+            }
+        }
+        false
     }
 
     /// Items, then perhaps a colon and conditions.
     pub(super) fn clause(&mut self) -> Read<Clause> {
         let start = self.here();
+        self.eat(T::ForAll);
+        let mut distinct = self.eat_distinct();
         let items = self.items()?;
-        let mut such_that = Vec::new();
+        distinct |= self.eat_distinct();
+        let mut such_that = if distinct { pairwise_different(&items) } else { Vec::new() };
         if matches!(self.peek(), T::Colon | T::SuchThat) || self.separating_bar() {
             self.bump();
-            such_that = self.items()?;
+            such_that.extend(self.items()?);
         }
         Ok(Clause { items, such_that, span: self.since(start) })
     }
@@ -50,12 +90,21 @@ impl Parser<'_> {
                 let last = self.range()?;
                 self.fold_dots(&mut items, last)?;
             } else {
-                items.push(self.condition()?);
+                let item = self.condition()?;
+                items.push(self.without_definition(item));
             }
             debug_assert!(self.at > before, "an item must move on");
-            let comma = self.eat(T::Comma);
-            let more = !matches!(self.peek(), T::End | T::ForAll | T::Period)
-                && !self.peek().closes()
+            let ahead = usize::from(self.peek() == T::Comma);
+            if self.statement_at(self.at + ahead) {
+                return Ok(items);
+            }
+            // i = 1,…,m and k = 1,…,n
+            let and = self.place.splits && self.peek() == T::And && self.at_binder(1);
+            let comma = self.eat(T::Comma) || and && self.eat(T::And);
+            let ends = matches!(self.peek(), T::End | T::ForAll | T::Period)
+                || self.peek().closes()
+                || self.place.splits && self.at_bracketed_clause();
+            let more = !ends
                 && (comma
                     || self.place.quad_ends
                         && self.gap().has(Gap::QUAD)
@@ -64,6 +113,46 @@ impl Parser<'_> {
                 return Ok(items);
             }
         }
+    }
+
+    /// Whether `i =` or `i ∈` stands so many tokens ahead.
+    fn at_binder(&self, by: usize) -> bool {
+        self.ahead(by) == T::Word && matches!(self.ahead(by + 1), T::Equal | T::In)
+    }
+
+    fn eat_distinct(&mut self) -> bool {
+        let token = &self.tokens[self.at];
+        let word = matches!(self.peek(), T::Word | T::Text);
+        let found = word && matches!(token.text.as_str(), "distinct" | "different");
+        if found {
+            self.bump();
+        }
+        found
+    }
+
+    /// `i ∈ M = {1,…,m}` where nothing else says what `M` is: the set is noted.
+    fn without_definition(&mut self, item: Expression) -> Expression {
+        if !self.place.splits {
+            return item;
+        }
+        let Kind::Chain(first, mut links) = item.kind else { return item };
+        if let [(Relation::In, set), (Relation::Equal, value)] = &links[..]
+            && let Kind::Name(name) = &set.kind
+            && matches!(value.kind, Kind::Range(..) | Kind::Set(_) | Kind::Builder(..))
+        {
+            if self.declared.insert(name.text.clone()) {
+                self.passing.push(Line {
+                    left: vec![set.clone()],
+                    links: vec![(Relation::Equal, value.clone())],
+                    clauses: Vec::new(),
+                    label: None,
+                    remark: None,
+                    span: set.span.to(value.span),
+                });
+            }
+            links.truncate(1);
+        }
+        Expression { kind: Kind::Chain(first, links), span: item.span }
     }
 
     /// `i = 1, …, n` is `i ∈ {1..n}`; `{1, …, n}` is `{1..n}`; a second number must be the next.
@@ -101,7 +190,8 @@ impl Parser<'_> {
     /// The clause under a sum, with its upper limit folded in.
     pub(super) fn limits(&mut self) -> Read<Clause> {
         let start = self.here();
-        let mut lower = None;
+        let plain = self.at_plain_limits();
+        let mut lower = if plain { Some(self.plain_limits()?) } else { None };
         let mut upper = None;
         for _ in 0..2 {
             if lower.is_none() && self.eat(T::Underscore) {
@@ -114,19 +204,20 @@ impl Parser<'_> {
             return Err(self.expected("“_” and the index of the sum"));
         };
         if let Some(upper) = upper {
-            let last = clause.items.pop();
-            match last.map(|e| e.kind) {
-                Some(Kind::Chain(index, mut links))
-                    if links.len() == 1 && links[0].0 == Relation::Equal =>
-                {
-                    let span = self.since(start);
-                    let from = links.remove(0).1;
-                    let range =
-                        Expression { kind: Kind::Range(Box::new(from), Box::new(upper)), span };
-                    let kind = Kind::Chain(index, vec![(Relation::In, range)]);
-                    clause.items.push(Expression { kind, span });
-                }
-                _ => return Err(self.report(message::lower_limit(clause.span))),
+            let begins = |item: &Expression| {
+                matches!(&item.kind, Kind::Chain(_, links)
+                    if matches!(&links[..], [(Relation::Equal, _)]))
+            };
+            let Some(at) = clause.items.iter().position(begins) else {
+                return Err(self.report(message::lower_limit(clause.span)));
+            };
+            let span = self.since(start);
+            let first = clause.items.remove(at);
+            if let Kind::Chain(index, mut links) = first.kind {
+                let from = links.remove(0).1;
+                let kind = Kind::Range(Box::new(from), Box::new(upper));
+                let kind = Kind::Chain(index, vec![(Relation::In, Expression { kind, span })]);
+                clause.items.insert(at, Expression { kind, span });
             }
         }
         Ok(clause)
@@ -153,6 +244,27 @@ impl Parser<'_> {
         self.end = end;
         value
     }
+}
+
+/// `i ≠ j, i ≠ k, j ≠ k` for the names of a quantifier.
+fn pairwise_different(items: &[Expression]) -> Vec<Expression> {
+    let name = |item: &Expression| match &item.kind {
+        Kind::Name(_) => Some(item.clone()),
+        Kind::Chain(first, links) if matches!(links[..], [(Relation::In, _)]) => {
+            matches!(first.kind, Kind::Name(_)).then(|| first.as_ref().clone())
+        }
+        _ => None,
+    };
+    let names: Vec<Expression> = items.iter().filter_map(name).collect();
+    let mut pairs = Vec::new();
+    for (i, one) in names.iter().enumerate() {
+        for other in &names[i + 1..] {
+            let kind =
+                Kind::Chain(Box::new(one.clone()), vec![(Relation::NotEqual, other.clone())]);
+            pairs.push(Expression { kind, span: one.span.to(other.span) });
+        }
+    }
+    pairs
 }
 
 fn follows(first: &Expression, second: &Expression) -> bool {

@@ -1,0 +1,277 @@
+//! What papers leave unsaid, filled in before the check: a set written `\mathcal{N}` that is
+//! declared as `N`, a domain `x ≥ 0` of a variable with indices, the set over which an index
+//! runs everywhere else.
+
+use std::collections::{BTreeMap, BTreeSet};
+
+use super::usage::{children, of_clause, words};
+use crate::diagnostic::{Diagnostic, names as message};
+use crate::parse::needed;
+use crate::place::Span;
+use crate::syntax::{Clause, Expression, Formulation, Kind, Line, Name, Relation};
+
+/// A tree with nothing left unsaid, and what was assumed.
+pub(super) struct Completed {
+    pub(super) tree: Formulation,
+    /// The set of each index that runs over one set wherever it has one.
+    pub(super) habits: BTreeMap<String, Expression>,
+    pub(super) notes: Vec<Diagnostic>,
+}
+
+/// `O(tree · log names)`, and for each bare domain another walk.
+pub(super) fn completed(tree: &Formulation) -> Completed {
+    let mut out = Completed { tree: tree.clone(), habits: BTreeMap::new(), notes: Vec::new() };
+    let declared = declared(tree);
+    let aliases = aliases(tree, &declared, &mut out.notes);
+    if !aliases.is_empty() {
+        rename(&mut out.tree, &aliases);
+    }
+    out.statements(&declared);
+    out.habits = habits(&out.tree, &declared);
+    out
+}
+
+/// The names of data and definitions.
+fn declared(tree: &Formulation) -> BTreeSet<String> {
+    let mut found = BTreeSet::new();
+    for line in tree.data.iter().chain(&tree.definitions) {
+        let operands = line.left.iter().chain(line.links.first().map(|(_, e)| e));
+        for expression in operands {
+            if let Kind::Name(name) = &expression.kind {
+                found.insert(name.text.clone());
+            }
+            if let Kind::Interval(a, b) = &expression.kind {
+                for end in [a, b] {
+                    if let Kind::Name(name) = &end.kind {
+                        found.insert(name.text.clone());
+                    }
+                }
+            }
+        }
+    }
+    found
+}
+
+/// Every expression of the objective and the statements, with the quantifiers around it.
+fn each<'t>(tree: &'t Formulation, visit: &mut dyn FnMut(&'t Expression, &[&'t Clause])) {
+    if let Some(objective) = &tree.objective {
+        walk(&objective.expression, &mut Vec::new(), visit);
+    }
+    for line in &tree.statements {
+        let mut scope: Vec<&Clause> = line.clauses.iter().collect();
+        for expression in super::usage::of_line(line) {
+            walk(expression, &mut scope, visit);
+        }
+    }
+}
+
+fn walk<'t>(
+    expression: &'t Expression,
+    scope: &mut Vec<&'t Clause>,
+    visit: &mut dyn FnMut(&'t Expression, &[&'t Clause]),
+) {
+    visit(expression, scope);
+    let inside = matches!(&expression.kind, Kind::Big(..));
+    if let Kind::Big(_, clause, _) = &expression.kind {
+        scope.push(clause);
+    }
+    for child in children(expression) {
+        walk(child, scope, visit);
+    }
+    if inside {
+        scope.pop();
+    }
+}
+
+/// `\mathcal F` where only `F` is declared; `\mathbf x` where `x` is what has indices.
+fn aliases(
+    tree: &Formulation,
+    declared: &BTreeSet<String>,
+    notes: &mut Vec<Diagnostic>,
+) -> BTreeMap<String, String> {
+    let mut found: BTreeMap<String, (String, Span)> = BTreeMap::new();
+    let mut indexed = BTreeSet::new();
+    let mut see = |expression: &Expression| {
+        let (Kind::Name(name) | Kind::Call(name, _)) = &expression.kind else { return };
+        if !name.indices.is_empty() {
+            indexed.insert(name.text.clone());
+        }
+        if let Some(plain) = undecorated(&name.text)
+            && !declared.contains(&name.text)
+        {
+            found.entry(name.text.clone()).or_insert_with(|| (plain, expression.span));
+        }
+    };
+    each(tree, &mut |expression, _| see(expression));
+    for line in tree.data.iter().chain(&tree.definitions) {
+        let mut work = super::usage::of_line(line);
+        while let Some(expression) = work.pop() {
+            see(expression);
+            work.extend(children(expression));
+        }
+    }
+    found.retain(|text, (plain, _)| {
+        declared.contains(plain) || indexed.contains(plain) && !indexed.contains(text)
+    });
+    let tell = |(text, (plain, span)): (String, (String, Span))| {
+        notes.push(message::taken_for(&text, &plain, span));
+        (text, plain)
+    };
+    found.into_iter().map(tell).collect()
+}
+
+/// The letters of a name whose decoration is only a way to set it.
+fn undecorated(text: &str) -> Option<String> {
+    let (command, rest) = text.strip_prefix('\\')?.split_at(text.find([' ', '{'])? - 1);
+    let typeface =
+        matches!(command, "mathcal" | "mathscr" | "mathbf" | "boldsymbol" | "bm" | "mathbb");
+    let plain = rest.trim_matches([' ', '{', '}']);
+    (typeface && !plain.is_empty()).then(|| plain.to_owned())
+}
+
+fn rename(tree: &mut Formulation, aliases: &BTreeMap<String, String>) {
+    let mut rename = |name: &mut Name| {
+        if let Some(plain) = aliases.get(&name.text) {
+            name.text.clone_from(plain);
+        }
+    };
+    if let Some(objective) = &mut tree.objective {
+        crate::syntax::each_name(&mut objective.expression, &mut rename);
+    }
+    let lines = tree.data.iter_mut().chain(&mut tree.definitions).chain(&mut tree.statements);
+    for line in lines {
+        let links = line.links.iter_mut().map(|(_, operand)| operand);
+        let clauses = line.clauses.iter_mut();
+        let clauses = clauses.flat_map(|c| c.items.iter_mut().chain(&mut c.such_that));
+        for expression in line.left.iter_mut().chain(links).chain(clauses) {
+            crate::syntax::each_name(expression, &mut rename);
+        }
+    }
+}
+
+impl Completed {
+    /// Domain lines of variables without their indices become one for each way in which the
+    /// variable is used.
+    fn statements(&mut self, declared: &BTreeSet<String>) {
+        let bare: BTreeSet<String> = self
+            .tree
+            .statements
+            .iter()
+            .filter(|line| is_bare_domain(line, declared))
+            .flat_map(|line| line.left.iter().filter_map(bare_name).map(|n| n.text.clone()))
+            .collect();
+        if bare.is_empty() {
+            return;
+        }
+        let uses = uses(&self.tree, &bare);
+        let mut statements = Vec::with_capacity(self.tree.statements.len());
+        for line in std::mem::take(&mut self.tree.statements) {
+            if !is_bare_domain(&line, declared) {
+                statements.push(line);
+                continue;
+            }
+            for operand in &line.left {
+                let found = bare_name(operand).and_then(|name| uses.get(&name.text));
+                let own = Line { left: vec![operand.clone()], ..line.clone() };
+                match found {
+                    None => statements.push(own),
+                    Some(found) => {
+                        statements.extend(found.iter().map(|(left, clauses)| Line {
+                            left: vec![left.clone()],
+                            clauses: clauses.clone(),
+                            ..own.clone()
+                        }));
+                    }
+                }
+            }
+        }
+        self.tree.statements = statements;
+    }
+}
+
+fn bare_name(expression: &Expression) -> Option<&Name> {
+    match &expression.kind {
+        Kind::Name(name) if name.indices.is_empty() && name.superscript.is_none() => Some(name),
+        _ => None,
+    }
+}
+
+/// `x, y ≥ 0`, `x ∈ {0,1}^n`: names without indices and constants.
+fn is_bare_domain(line: &Line, declared: &BTreeSet<String>) -> bool {
+    let own = |e: &Expression| bare_name(e).is_some_and(|n| !declared.contains(&n.text));
+    let constant = |e: &Expression| match &e.kind {
+        Kind::Number(_)
+        | Kind::NumberSet(_)
+        | Kind::Set(_)
+        | Kind::Interval(..)
+        | Kind::Range(..)
+        | Kind::Infinity => true,
+        Kind::Name(name) => declared.contains(&name.text) && name.indices.is_empty(),
+        _ => false,
+    };
+    line.clauses.is_empty()
+        && !line.links.is_empty()
+        && line.left.iter().all(own)
+        && line.links.iter().all(|(_, e)| constant(e))
+}
+
+type Uses = BTreeMap<String, Vec<(Expression, Vec<Clause>)>>;
+
+/// Every way in which the names carry indices, with the part of the quantifiers around that
+/// binds them.
+fn uses(tree: &Formulation, names: &BTreeSet<String>) -> Uses {
+    let mut found: Uses = BTreeMap::new();
+    each(tree, &mut |expression, scope| {
+        let Kind::Name(name) = &expression.kind else { return };
+        if name.indices.is_empty() || !names.contains(&name.text) {
+            return;
+        }
+        let line = Line {
+            left: vec![expression.clone()],
+            links: Vec::new(),
+            clauses: Vec::new(),
+            label: None,
+            remark: None,
+            span: expression.span,
+        };
+        let scope: Vec<Clause> = scope.iter().map(|c| (*c).clone()).collect();
+        let clauses = needed(&line, &scope);
+        let over_subsets = clauses.iter().flat_map(of_clause).any(|item| {
+            matches!(&item.kind, Kind::Chain(_, links)
+                if links.iter().any(|(r, _)| matches!(r, Relation::Subset | Relation::SubsetOrEqual)))
+        });
+        let known = found.entry(name.text.clone()).or_default();
+        let one = (expression.clone(), clauses);
+        if !over_subsets && known.len() < 64 && !known.contains(&one) {
+            known.push(one);
+        }
+    });
+    found.retain(|_, uses| !uses.is_empty());
+    found
+}
+
+/// The one set over which an index runs wherever its set is said.
+fn habits(tree: &Formulation, declared: &BTreeSet<String>) -> BTreeMap<String, Expression> {
+    let mut found: BTreeMap<String, Option<Expression>> = BTreeMap::new();
+    let mut see = |item: &Expression| {
+        let Kind::Chain(first, links) = &item.kind else { return };
+        let (Some(name), [(Relation::In, set)]) = (bare_name(first), &links[..]) else { return };
+        let mut mentioned = BTreeSet::new();
+        words(set, &mut mentioned);
+        if !mentioned.iter().all(|word| declared.contains(*word)) {
+            return;
+        }
+        let known = found.entry(name.text.clone()).or_insert_with(|| Some(set.clone()));
+        if known.as_ref().is_some_and(|one| one.kind != set.kind) {
+            *known = None;
+        }
+    };
+    let lines = tree.data.iter().chain(&tree.definitions).chain(&tree.statements);
+    lines.flat_map(|line| &line.clauses).flat_map(of_clause).for_each(&mut see);
+    each(tree, &mut |expression, _| {
+        if let Kind::Big(_, clause, _) = &expression.kind {
+            of_clause(clause).for_each(&mut see);
+        }
+    });
+    found.into_iter().filter_map(|(name, set)| Some((name, set?))).collect()
+}

@@ -1,0 +1,111 @@
+//! What may stand before the objective: `Z^* = \\min`, `(P) max`, `\\min_{x,y}`, `max{… : …}`.
+
+use super::Parser;
+use crate::lex::token::{Gap, Kind as T};
+
+/// How far away the bracket that closes is sought.
+const REACH: usize = 4_000;
+
+impl Parser<'_> {
+    /// The place of the word that opens the objective, where only its name stands before it on
+    /// the line.
+    pub(super) fn named_objective(&self) -> Option<usize> {
+        let mut depth = 0_u32;
+        for i in self.at..self.tokens.len() {
+            let token = &self.tokens[i];
+            if i > self.at && (token.kind == T::Break || token.gap.has(Gap::BLANK_LINE)) {
+                return None;
+            }
+            if depth == 0 && i > self.at {
+                let before = self.tokens[i - 1].kind;
+                let next = self.tokens.get(i + 1).map_or(T::End, |t| t.kind);
+                let opens = matches!(next, T::LeftParen | T::LeftBrace);
+                let ends = matches!(before, T::Equal | T::Colon | T::RightParen)
+                    || token.gap.has(Gap::QUAD);
+                match token.kind {
+                    T::Minimise | T::Maximise => return Some(i),
+                    T::Min | T::Max if ends && !opens => return Some(i),
+                    _ => {}
+                }
+                let relation = before.is_relation() || before == T::Comma;
+                if relation && i > self.at + 1 || token.gap.has(Gap::NEWLINE) {
+                    return None;
+                }
+            }
+            if token.kind.opens() {
+                depth += 1;
+            } else if token.kind.closes() {
+                depth = depth.saturating_sub(1);
+            }
+        }
+        None
+    }
+
+    /// Passes over `_{x,y}` behind `\\min`: a list of variables with perhaps their domains.
+    pub(super) fn skip_variables(&mut self) {
+        if self.peek() != T::Underscore {
+            return;
+        }
+        let braced = self.ahead(1) == T::LeftBrace;
+        self.at += 1;
+        if !braced {
+            self.bump();
+            return;
+        }
+        if let Some(close) = self.closing(self.at) {
+            self.at = close + 1;
+        }
+    }
+
+    /// Whether `\\min_{…}` at a place names variables and does not run over a set.
+    pub(super) fn names_variables(&self) -> bool {
+        if self.ahead(1) != T::Underscore {
+            return false;
+        }
+        let Some(close) = self.closing(self.at + 2) else { return self.ahead(2) == T::Word };
+        let inner = self.tokens.get(self.at + 3..close).unwrap_or_default();
+        inner.iter().all(|t| !t.kind.is_relation())
+    }
+
+    /// The brace that closes the one at a place.
+    pub(super) fn closing(&self, open: usize) -> Option<usize> {
+        let mut depth = 0_u32;
+        for (i, token) in self.tokens.iter().enumerate().skip(open).take(REACH) {
+            if token.kind.opens() {
+                depth += 1;
+            } else if token.kind.closes() {
+                depth = depth.saturating_sub(1);
+            }
+            if depth == 0 {
+                return token.kind.closes().then_some(i);
+            }
+        }
+        None
+    }
+
+    /// `max { Σ p x : Σ w x ≤ c, x ∈ {0,1} }` as an objective and its constraints: the braces
+    /// go and the colon becomes "subject to".
+    pub(super) fn open_set_form(&mut self) {
+        let open = self.at;
+        if self.tokens[open].kind != T::LeftBrace {
+            return;
+        }
+        let Some(close) = self.closing(open) else { return };
+        let mut depth = 0_u32;
+        let mut colon = None;
+        for i in open..close {
+            let kind = self.tokens[i].kind;
+            if kind.opens() {
+                depth += 1;
+            } else if kind.closes() {
+                depth -= 1;
+            } else if depth == 1 && matches!(kind, T::Colon | T::SuchThat | T::Bar) {
+                colon.get_or_insert(i);
+            }
+        }
+        let Some(colon) = colon else { return };
+        self.tokens[colon].kind = T::SubjectTo;
+        self.tokens[close].kind = T::Break;
+        self.at += 1;
+    }
+}

@@ -198,6 +198,20 @@ pub struct SearchReport {
     /// What stopped it, when the status is `limit`.
     #[serde(default)]
     pub stopped: Option<String>,
+    /// What node work did.
+    #[serde(default)]
+    pub node_work: NodeWorkReport,
+}
+
+/// What node work did; all 0 where none was asked for.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct NodeWorkReport {
+    /// Nodes that propagation over rows closed without solving them.
+    pub closed: u32,
+    /// Bounds that it tightened.
+    pub tightened: u64,
+    /// Bounds that reduced costs tightened.
+    pub fixed: u64,
 }
 
 /// One value of a solution; written in JSON as `["x","Ash","Birch",1.0]`.

@@ -179,6 +179,10 @@ pub struct Run {
     pub branching: BranchingRule,
     /// The node selection rule.
     pub selection: Selection,
+    /// Variables in the order in which they are branched on, before any that is not named.
+    pub priority: Vec<String>,
+    /// What is done at a node beside its relaxation; `None` is the default: `objective step`.
+    pub node_work: Option<Vec<String>>,
     /// General cuts by class, and "on demand"; `None` is the default: families on demand only.
     pub cuts: Option<Vec<String>>,
 }
@@ -193,6 +197,8 @@ impl Default for Run {
             best_known: None,
             branching: BranchingRule::default(),
             selection: Selection::default(),
+            priority: Vec::new(),
+            node_work: None,
             cuts: None,
         }
     }

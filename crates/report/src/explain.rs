@@ -128,6 +128,8 @@ fn clipped(name: &str) -> String {
 
 #[cfg(test)]
 mod tests {
+    use record::results::NodeWorkReport;
+
     use super::*;
 
     fn found(families: &[&str], level: ConflictLevel) -> ConflictReport {
@@ -178,6 +180,7 @@ mod tests {
             solution: Vec::new(),
             checked: false,
             stopped: None,
+            node_work: NodeWorkReport::default(),
         };
         let text = search(&vain).unwrap();
         assert!(

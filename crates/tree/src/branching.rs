@@ -65,6 +65,8 @@ impl Gain {
 #[derive(Debug)]
 pub(crate) struct Chooser {
     whole: Vec<ColumnId>,
+    /// The place of each column's variable in the list of priorities; low goes first.
+    rank: Vec<usize>,
     down: Vec<Gain>,
     up: Vec<Gain>,
     all_down: Gain,
@@ -72,13 +74,21 @@ pub(crate) struct Chooser {
 }
 
 impl Chooser {
-    pub(crate) fn new(model: &Model) -> Self {
+    /// `priority` names variables, first those to be branched on first.
+    pub(crate) fn new(model: &Model, priority: &[String]) -> Self {
         let columns = model.columns();
+        let place = |name: &String| priority.iter().position(|wanted| wanted == name);
+        let rank = |variable: model::VariableId| {
+            let variable = model.variables().get(variable.index());
+            variable.and_then(|v| place(&v.name)).unwrap_or(priority.len())
+        };
+        let rank = columns.iter().map(|column| rank(column.variable)).collect();
         let whole =
             (0..columns.len()).filter(|&j| columns[j].integer).map(ColumnId::from_index).collect();
         let none = vec![Gain::default(); columns.len()];
         Self {
             whole,
+            rank,
             down: none.clone(),
             up: none,
             all_down: Gain::default(),
@@ -109,29 +119,63 @@ impl Chooser {
     /// The fractional column that `rule` prefers; ties go to the lower column.
     pub(crate) fn choose(&self, rule: Branching, x: &[f64]) -> Option<Choice> {
         let mut best: Option<(f64, Choice)> = None;
-        for &column in self.whole.iter().filter(|j| is_fractional(x[j.index()])) {
-            let choice = Choice::new(column, x[column.index()]);
+        for choice in self.candidates(x) {
             let score = match rule {
                 Branching::MostFractional | Branching::ByHand => {
                     smaller(choice.value - choice.floor, choice.floor + 1.0 - choice.value)
                 }
-                Branching::Pseudocost => self.score(&choice),
+                Branching::Pseudocost | Branching::Strong | Branching::Reliability => {
+                    self.score(&choice)
+                }
             };
-            if best.is_none_or(|(top, _)| score > top + TIE * (1.0 + top)) {
+            if best.is_none_or(|(top, _)| is_better(score, top)) {
                 best = Some((score, choice));
             }
         }
         best.map(|(_, choice)| choice)
     }
 
+    /// The fractional columns of the first variable that has one, in order.
+    pub(crate) fn candidates(&self, x: &[f64]) -> Vec<Choice> {
+        let fractional = self.whole.iter().filter(|j| is_fractional(x[j.index()]));
+        let first = fractional.clone().map(|j| self.rank[j.index()]).min();
+        let first = fractional.filter(|j| Some(self.rank[j.index()]) == first);
+        first.map(|&column| Choice::new(column, x[column.index()])).collect()
+    }
+
     /// The product of the expected gains of both sides.
-    fn score(&self, choice: &Choice) -> f64 {
+    pub(crate) fn score(&self, choice: &Choice) -> f64 {
+        let [down, up] = self.expected(choice);
+        product(down, up)
+    }
+
+    /// The expected gains of both sides.
+    fn expected(&self, choice: &Choice) -> [f64; 2] {
         let fraction = choice.value - choice.floor;
         let j = choice.column.index();
         let expected = |one: Gain, all: Gain| one.mean().or(all.mean()).unwrap_or(1.0);
         let down = expected(self.down[j], self.all_down) * fraction;
         let up = expected(self.up[j], self.all_up) * (1.0 - fraction);
-        larger(down, LEAST_GAIN) * larger(up, LEAST_GAIN)
+        [down, up]
+    }
+
+    /// Whether so many gains are known on both sides of a column.
+    pub(crate) fn is_reliable(&self, column: ColumnId, least: u32) -> bool {
+        let j = column.index();
+        self.down[j].count >= least && self.up[j].count >= least
+    }
+
+    /// What the best solution under each child is estimated to cost over the bound: the less
+    /// dear rounding of every fractional column but the one branched on.
+    pub(crate) fn estimates(&self, x: &[f64], branched: &Choice) -> [f64; 2] {
+        let mut rest = 0.0;
+        for &column in self.whole.iter().filter(|&&j| j != branched.column) {
+            if is_fractional(x[column.index()]) {
+                let [down, up] = self.expected(&Choice::new(column, x[column.index()]));
+                rest += smaller(down, up);
+            }
+        }
+        self.expected(branched).map(|side| side + rest)
     }
 
     /// A column to branch on where no value is fractional and still the point is no
@@ -158,6 +202,16 @@ pub(crate) fn split(column: ColumnId, value: f64, (lower, upper): (f64, f64)) ->
     let near = value.round();
     let floor = if near >= upper { near - 1.0 } else { near };
     Some(Choice { column, value, floor })
+}
+
+/// The product score of the gains of both sides.
+pub(crate) fn product(down: f64, up: f64) -> f64 {
+    larger(down, LEAST_GAIN) * larger(up, LEAST_GAIN)
+}
+
+/// Whether a score is better than another, and not only by rounding.
+pub(crate) fn is_better(score: f64, top: f64) -> bool {
+    score > top + TIE * (1.0 + top)
 }
 
 /// Whether a value of a whole column is fractional.
@@ -189,7 +243,7 @@ mod tests {
         for _ in 0..columns {
             builder.column(&[], &spec).unwrap();
         }
-        Chooser::new(&builder.build())
+        Chooser::new(&builder.build(), &[])
     }
 
     #[test]

@@ -24,7 +24,7 @@ impl Search {
     /// The node in hand is solved and its candidates are tried: close it or branch.
     pub(crate) fn decide(&mut self) -> Option<Progress> {
         self.job = Job::None;
-        if self.prove_root() {
+        if self.prove_root() || self.begin_probing() {
             return None;
         }
         let mut hand = self.hand.take()?;
@@ -34,7 +34,7 @@ impl Search {
             hand.proved = self.better(hand.proved.take(), cheap);
         }
         let closed = self.closed(&hand, point);
-        let choice = if closed { None } else { self.choice(hand.node, &point.x) };
+        let choice = if closed { None } else { self.choice(&hand, &point.x) };
         let held = self.is_to_be_held(hand.node);
         let state = match (closed, choice, hand.accepted) {
             (true, _, Some(_)) | (false, None, Some(_)) => NodeState::Integer,
@@ -47,6 +47,9 @@ impl Search {
             }
         };
         let inherited = self.record(&hand, point, state);
+        if state == NodeState::Branched || state == NodeState::Open {
+            self.fix(hand.node, point);
+        }
         let root = hand.node == NodeId::ROOT;
         let state = if root && state == NodeState::Branched && !self.settings.search {
             NodeState::Open
@@ -67,7 +70,7 @@ impl Search {
         }
         match choice {
             Some(_) if held => self.hold(hand.node, inherited, point.x.clone()),
-            Some(choice) => self.branch(hand.node, inherited, &choice),
+            Some(choice) => self.branch(hand.node, inherited, &choice, &point.x),
             None => self.leaf(hand.node, hand.proved.as_ref()),
         }
         self.announce();
@@ -82,9 +85,9 @@ impl Search {
         self.target.closes(point.bound) || hand.accepted.is_some_and(near)
     }
 
-    fn choice(&self, node: NodeId, x: &[f64]) -> Option<Choice> {
+    fn choice(&self, hand: &Hand, x: &[f64]) -> Option<Choice> {
         let simplex = &self.relaxation.as_ref()?.simplex;
-        let by_hand = self.choice_by_hand(node, x);
+        let by_hand = self.choice_by_hand(hand.node, x).or(hand.probed_choice);
         let chosen = by_hand.or_else(|| self.chooser.choose(self.settings.branching, x));
         chosen.or_else(|| self.chooser.any(x, |column| simplex.bounds(lp::Col(column.0))))
     }
@@ -129,11 +132,12 @@ impl Search {
         });
     }
 
-    /// Makes the two children of a node.
-    pub(crate) fn branch(&mut self, node: NodeId, bound: f64, choice: &Choice) {
-        for (branch, distance) in choice.sides() {
+    /// Makes the two children of a node whose relaxation's point is `x`.
+    pub(crate) fn branch(&mut self, node: NodeId, bound: f64, choice: &Choice, x: &[f64]) {
+        let estimates = self.chooser.estimates(x, choice);
+        for ((branch, distance), estimate) in choice.sides().into_iter().zip(estimates) {
             let child = self.tree.child(node, branch, distance, bound);
-            self.open.insert(child, bound);
+            self.open.insert_child(child, bound, bound + estimate);
             self.events.push(Event::Created {
                 node: child,
                 parent: Some(node),

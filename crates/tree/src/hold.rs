@@ -61,11 +61,10 @@ impl Search {
         let Some(held) = self.holding.nodes.get(&node) else { return Ok(false) };
         let bounds = self.bounds_at(node, column);
         let choice = split(column, held.x[column.index()], bounds).ok_or(Refusal::Fixed(node))?;
-        let bound = held.bound;
-        self.holding.nodes.remove(&node);
+        let Some(held) = self.holding.nodes.remove(&node) else { return Ok(false) };
         self.open.remove(node, self.tree.node(node).bound);
         self.tree.node_mut(node).state = NodeState::Branched;
-        self.branch(node, bound, &choice);
+        self.branch(node, held.bound, &choice, &held.x);
         self.announce();
         Ok(true)
     }

@@ -87,7 +87,7 @@ impl Search {
         if !self.tree.has(id) {
             return None;
         }
-        let path = self.tree.path(id);
+        let path = self.tree.branchings(id);
         let node = self.tree.node(id);
         let mut view = NodeView {
             node: id,
@@ -120,7 +120,8 @@ impl Search {
         let above = node.parent().filter(|_| view.ahead).map(|parent| self.tree.node(parent));
         let Some(basis) = above.unwrap_or(node).basis.as_deref() else { return };
         let rows = if view.ahead { relaxation.row_count() } else { node.rows as usize };
-        let Ok(mut simplex) = relaxation.rebuilt(rows, &view.path) else { return };
+        let path = self.tree.path(view.node);
+        let Ok(mut simplex) = relaxation.rebuilt(rows, &path) else { return };
         simplex.load_basis(basis);
         let iterations = view.ahead.then_some(LOOK);
         simplex.solve(Limits { iterations, ..Limits::default() });
@@ -128,8 +129,8 @@ impl Search {
         match outcome {
             Outcome::Optimal(solution) => {
                 view.bound = Some(self.user(relaxation.internal(solution.objective)));
-                let cheap = relaxation.prove_at(&view.path, &solution.duals);
-                let (proved, exact) = relaxation.certified(&view.path, &simplex.basis(), EYE);
+                let cheap = relaxation.prove_at(&path, &solution.duals);
+                let (proved, exact) = relaxation.certified(&path, &simplex.basis(), EYE);
                 (view.checked_bound, view.exact) = (self.better(cheap, proved), exact);
                 let direction = direction(&self.model);
                 view.reduced_costs =

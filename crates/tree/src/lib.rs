@@ -45,6 +45,10 @@
 //! incumbent on the way: each node of the log stands at the bound of its relaxation. A node starts from its
 //! parent's final basis with all rows found so far, and from nothing else.
 //!
+//! **Node work** is off unless [`NodeWork`] asks for it: bounds tightened by rows or by reduced
+//! costs are each checked in exact arithmetic before they are used, so that no proof rests on them
+//! unchecked.
+//!
 //! **What is trusted.** A node is closed by floating-point arithmetic with the tolerances that
 //! each file names; each leaf is then checked in exact arithmetic and counted as checked or not.
 //! An LP point is a solution only after an exact check of every row and family. A node that
@@ -59,11 +63,14 @@ mod cycle;
 mod decide;
 mod direction;
 mod event;
+mod fix;
 mod hold;
 mod inspect;
 mod node;
 mod open;
+mod probe;
 mod proofs;
+mod propagate;
 mod propose;
 mod proving;
 mod relaxation;
@@ -75,6 +82,7 @@ mod settings;
 mod solution;
 mod summary;
 mod target;
+mod tightened;
 mod tour;
 mod work;
 
@@ -85,8 +93,8 @@ pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
 pub use inspect::{NodeView, ViolatedSubset};
 pub use root::{RootResult, Status};
 pub use search::{Progress, Search, Work};
-pub use settings::{Branching, Selection, Settings};
-pub use summary::Summary;
+pub use settings::{Branching, NodeWork, Selection, Settings};
+pub use summary::{NodeWorkCounts, Summary};
 
 #[cfg(test)]
 mod tests;

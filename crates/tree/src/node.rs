@@ -7,6 +7,7 @@ use lp::Basis;
 use model::ColumnId;
 
 use crate::event::{Branch, NodeId, NodeState, Side};
+use crate::tightened::Tightened;
 
 /// One node.
 #[derive(Debug)]
@@ -55,6 +56,8 @@ impl Node {
 #[derive(Debug, Default)]
 pub(crate) struct Tree {
     nodes: Vec<Node>,
+    /// Bounds that node work tightened.
+    pub(crate) tightened: Tightened,
 }
 
 impl Tree {
@@ -128,12 +131,29 @@ impl Tree {
     }
 
     /// The branchings from the root to a node. `O(depth)`.
+    pub(crate) fn branchings(&self, id: NodeId) -> Vec<Branch> {
+        let mut path: Vec<Branch> =
+            self.ancestry(id).filter_map(|here| self.node(here).branch()).collect();
+        path.reverse();
+        path
+    }
+
+    /// A node and those above it, the root last.
+    fn ancestry(&self, id: NodeId) -> impl Iterator<Item = NodeId> {
+        std::iter::successors(Some(id), |&here| self.node(here).parent())
+    }
+
+    /// The bounds of a node in the order in which they were set: branchings, and what was
+    /// tightened at each node before it was solved (and, above the node, after that).
+    /// `O(depth + tightened)`.
     pub(crate) fn path(&self, id: NodeId) -> Vec<Branch> {
         let mut path = Vec::with_capacity(self.node(id).depth as usize);
-        let mut at = Some(id);
-        while let Some(here) = at {
+        for here in self.ancestry(id) {
+            if here != id {
+                path.extend(self.tightened.after(here).iter().rev());
+            }
+            path.extend(self.tightened.before(here).iter().rev());
             path.extend(self.node(here).branch());
-            at = self.node(here).parent();
         }
         path.reverse();
         path

@@ -1,6 +1,6 @@
-//! The open nodes, in the order of either selection rule.
+//! The open nodes, in the order of each selection rule.
 
-use std::collections::BTreeSet;
+use std::collections::{BTreeMap, BTreeSet};
 
 use crate::event::NodeId;
 use crate::settings::Selection;
@@ -10,6 +10,11 @@ use crate::settings::Selection;
 pub(crate) struct Open {
     by_bound: BTreeSet<(u64, NodeId)>,
     by_number: BTreeSet<NodeId>,
+    by_estimate: BTreeSet<(u64, NodeId)>,
+    /// The estimates, of nodes that have one.
+    estimates: BTreeMap<NodeId, f64>,
+    /// The children of the node that was branched on since a node was last taken.
+    fresh: Vec<NodeId>,
 }
 
 impl Open {
@@ -17,6 +22,14 @@ impl Open {
     pub(crate) fn insert(&mut self, node: NodeId, bound: f64) {
         self.by_bound.insert((key(bound), node));
         self.by_number.insert(node);
+    }
+
+    /// Adds a child with its bound and the estimate of its best solution.
+    pub(crate) fn insert_child(&mut self, node: NodeId, bound: f64, estimate: f64) {
+        self.insert(node, bound);
+        self.by_estimate.insert((key(estimate), node));
+        self.estimates.insert(node, estimate);
+        self.fresh.push(node);
     }
 
     /// Takes out the `free` node that `selection` wants next; `bound_of` gives a node's bound.
@@ -30,10 +43,20 @@ impl Open {
         let node = match selection {
             Selection::BestBound => self.by_bound.iter().find(|&&(_, node)| free(node))?.1,
             Selection::DepthFirst => *self.by_number.iter().rev().find(|&&node| free(node))?,
+            Selection::BestEstimate => self.estimated(&free)?,
         };
-        self.by_bound.remove(&(key(bound_of(node)), node));
-        self.by_number.remove(&node);
+        self.fresh.clear();
+        self.remove(node, bound_of(node));
         Some(node)
+    }
+
+    /// The best fresh child, else the best of all; nodes without an estimate come last.
+    fn estimated(&self, free: &impl Fn(NodeId) -> bool) -> Option<NodeId> {
+        let fresh = self.fresh.iter().filter(|&&node| self.by_number.contains(&node) && free(node));
+        let rank = |node: NodeId| (self.estimates.get(&node).map_or(u64::MAX, |&e| key(e)), node);
+        let plunge = fresh.map(|&node| rank(node)).min().map(|(_, node)| node);
+        let best = || self.by_estimate.iter().find(|&&(_, node)| free(node)).map(|(_, node)| *node);
+        plunge.or_else(best).or_else(|| self.by_number.iter().copied().find(|&node| free(node)))
     }
 
     /// Takes out every node whose bound `closes`, which must hold for all bounds from some
@@ -44,8 +67,7 @@ impl Open {
             if !closes(value(last)) {
                 break;
             }
-            self.by_bound.pop_last();
-            self.by_number.remove(&node);
+            self.remove(node, value(last));
             gone.push(node);
         }
         gone.sort();
@@ -55,6 +77,9 @@ impl Open {
     /// Takes out a node; false when it is not open. `bound` is the one it was added with.
     pub(crate) fn remove(&mut self, node: NodeId, bound: f64) -> bool {
         self.by_number.remove(&node);
+        if let Some(estimate) = self.estimates.remove(&node) {
+            self.by_estimate.remove(&(key(estimate), node));
+        }
         self.by_bound.remove(&(key(bound), node))
     }
 
@@ -121,6 +146,13 @@ mod tests {
         };
         assert_eq!(order(Selection::BestBound), vec![2, 3, 4, 1]);
         assert_eq!(order(Selection::DepthFirst), vec![4, 3, 2, 1]);
+        let mut open = Open::default();
+        for (n, estimate) in [(1, 12.0), (2, 9.5), (3, 9.0), (4, 11.0)] {
+            open.insert_child(NodeId(n), bound_of(NodeId(n)), estimate);
+        }
+        let mut take = || open.take(Selection::BestEstimate, |_| true, bound_of).map(|n| n.0);
+        let order = [take(), take(), take(), take(), take()];
+        assert_eq!(order, [Some(3), Some(2), Some(4), Some(1), None]);
         let mut open = fill();
         assert_eq!(open.drain(|b| b >= 8.0), vec![NodeId(1), NodeId(4)]);
         assert_eq!((open.len(), open.least()), (2, Some(7.0)));

@@ -201,7 +201,8 @@ impl Search {
             let x = self.root.as_ref().map(|root| root.x.clone()).unwrap_or_default();
             self.hold(NodeId::ROOT, bound, x);
         } else {
-            self.branch(NodeId::ROOT, bound, &choice);
+            let x = self.root.as_ref().map(|root| root.x.clone()).unwrap_or_default();
+            self.branch(NodeId::ROOT, bound, &choice, &x);
         }
         self.announce();
     }

@@ -15,7 +15,9 @@ use crate::event::{Event, NodeId, Origin};
 use crate::hold::Holding;
 use crate::node::Tree;
 use crate::open::Open;
+use crate::probe::Probing;
 use crate::proofs::{Doubtful, Proof};
+use crate::propagate::Propagator;
 use crate::propose::Roundings;
 use crate::proving::Proving;
 use crate::relaxation::{Relaxation, direction};
@@ -24,6 +26,7 @@ use crate::round_trip::RoundTrip;
 use crate::rounds::Rounds;
 use crate::settings::Settings;
 use crate::solution::{Checker, Solution};
+use crate::summary::NodeWorkCounts;
 use crate::target::{Target, decimal, signed};
 use crate::tour::TourSearch;
 
@@ -79,6 +82,7 @@ pub(crate) enum Job {
     Separate,
     Complete(Purpose),
     Tour(Box<TourSearch>),
+    Probe(Box<Probing>),
     Prove(Box<Proving>, Proof),
 }
 
@@ -135,6 +139,28 @@ pub(crate) struct Hand {
     pub(crate) exact: bool,
     /// Whether a proof from its basis was tried.
     pub(crate) tried: bool,
+    /// Whether columns were tried for branching, and the best of them.
+    pub(crate) probed: bool,
+    pub(crate) probed_choice: Option<Choice>,
+}
+
+impl Hand {
+    /// A node whose relaxation is to be solved.
+    pub(crate) fn new(node: NodeId, iterations_before: u64) -> Self {
+        Self {
+            node,
+            iterations_before,
+            rows_added: 0,
+            rounds: 0,
+            accepted: None,
+            point: None,
+            proved: None,
+            exact: false,
+            tried: false,
+            probed: false,
+            probed_choice: None,
+        }
+    }
 }
 
 /// The best solution.
@@ -161,6 +187,8 @@ pub(crate) struct Ledger {
     pub(crate) closed: Vec<NodeId>,
     /// Whether a leaf was closed by its value.
     pub(crate) pruned: bool,
+    /// What node work did.
+    pub(crate) node_work: NodeWorkCounts,
     /// Work done outside of LP, separation and candidates.
     pub(crate) ticks: u64,
 }
@@ -176,6 +204,7 @@ pub struct Search {
     pub(crate) chooser: Chooser,
     pub(crate) trip: Option<Rc<RoundTrip>>,
     pub(crate) tree: Tree,
+    pub(crate) propagator: Option<Propagator>,
     pub(crate) open: Open,
     pub(crate) target: Target,
     pub(crate) incumbent: Option<Incumbent>,
@@ -200,7 +229,7 @@ impl Search {
     /// A search that has done nothing yet. `O(non-zeros)`.
     #[must_use]
     pub fn new(model: Rc<Model>, settings: Settings) -> Self {
-        let mut target = Target::new(&model);
+        let mut target = Target::new(&model, settings.node_work.lattice);
         if let Some(value) = settings.cutoff.and_then(decimal) {
             target.improve(signed(&model, value));
         }
@@ -208,9 +237,10 @@ impl Search {
         let mut search = Self {
             rounds: Rounds::new(&model),
             checker: Checker::new(&model),
-            chooser: Chooser::new(&model),
+            chooser: Chooser::new(&model, &settings.priority),
             trip: RoundTrip::find(&model).map(Rc::new),
             tree: Tree::new(),
+            propagator: settings.node_work.propagation.then(|| Propagator::new(&model)),
             open: Open::default(),
             target,
             incumbent: None,
@@ -345,6 +375,7 @@ impl Search {
             (Job::Separate, _) => "separating",
             (Job::Complete(_), _) => "completing a solution",
             (Job::Tour(_), _) => "looking for a round trip",
+            (Job::Probe(_), _) => "trying branchings",
             (Job::Prove(..), _) => "proving a bound",
             (Job::None, _) => "choosing",
         }

@@ -12,6 +12,13 @@ pub enum Branching {
     /// Letters 33). A column without a gain on a side takes the mean of all columns on that
     /// side; while there is no gain at all each unit counts 1, which is most fractional.
     Pseudocost,
+    /// Both sides of every fractional column are solved to the end, and the column with the best
+    /// product of gains is taken (full strong branching; Applegate, Bixby, Chvátal, Cook 1995).
+    Strong,
+    /// Pseudocosts, made reliable by trying both sides of a column while fewer than 8 gains are
+    /// known on a side; columns are tried in the order of their scores until 8 in a row were no
+    /// better (Achterberg, Koch, Martin 2005).
+    Reliability,
     /// By a person at each node: a node that must be branched on is held, open, until an
     /// [`Act::Branch`](crate::Act::Branch) names its column.
     ByHand,
@@ -25,6 +32,28 @@ pub enum Selection {
     BestBound,
     /// The one made last. Of two children the *at least* side is made last.
     DepthFirst,
+    /// A child of the node solved last while there is one (plunging), else the one with the best
+    /// estimate: its bound and what rounding each fractional column costs by the gains seen so far
+    /// (Bénichou et al. 1971). Ties go to the older node.
+    BestEstimate,
+}
+
+/// What is done at a node beside its relaxation. The root's relaxation is never touched.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct NodeWork {
+    /// Tightens bounds of whole columns by the written rows before a node is solved.
+    pub propagation: bool,
+    /// Tightens them by reduced costs and the best known value after a node is solved.
+    pub fixing: bool,
+    /// Closes nodes by the step of the objective, where every column with a cost is whole.
+    pub lattice: bool,
+}
+
+impl Default for NodeWork {
+    /// Bare: the step of the objective alone.
+    fn default() -> Self {
+        Self { propagation: false, fixing: false, lattice: true }
+    }
 }
 
 /// Rules and limits. A limit that is `None` does not hold.
@@ -34,6 +63,11 @@ pub struct Settings {
     pub branching: Branching,
     /// The selection rule.
     pub selection: Selection,
+    /// Variables by name: a node is branched on a fractional column of the first that has one,
+    /// before any that is not named.
+    pub priority: Vec<String>,
+    /// What is done at a node beside its relaxation.
+    pub node_work: NodeWork,
     /// A value of the objective known to be reachable: nodes that cannot be better are
     /// closed, and solutions that are worse are not taken.
     pub cutoff: Option<f64>,
@@ -53,6 +87,8 @@ impl Default for Settings {
         Self {
             branching: Branching::default(),
             selection: Selection::default(),
+            priority: Vec::new(),
+            node_work: NodeWork::default(),
             cutoff: None,
             node_limit: None,
             iteration_limit: None,

@@ -3,6 +3,17 @@
 use crate::root::Status;
 use crate::search::{Ending, Search, State};
 
+/// What node work did.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub struct NodeWorkCounts {
+    /// Nodes that propagation over rows closed without solving them.
+    pub closed: u32,
+    /// Bounds that it tightened.
+    pub tightened: u64,
+    /// Bounds that reduced costs tightened.
+    pub fixed: u64,
+}
+
 /// What a search gave. Bounds and values are in the direction of the objective.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Summary {
@@ -35,6 +46,8 @@ pub struct Summary {
     pub leaves_unchecked: u32,
     /// What stopped it, when the status is a limit.
     pub stopped: Option<String>,
+    /// What node work did.
+    pub node_work: NodeWorkCounts,
 }
 
 impl Search {
@@ -69,6 +82,7 @@ impl Search {
             leaves_checked: self.ledger.leaves_checked,
             leaves_unchecked: self.ledger.leaves_unchecked,
             stopped,
+            node_work: self.ledger.node_work,
         }
     }
 

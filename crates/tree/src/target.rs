@@ -27,10 +27,10 @@ pub(crate) struct Target {
 }
 
 impl Target {
-    /// No value known yet.
-    pub(crate) fn new(model: &Model) -> Self {
+    /// No value known yet. `lattice`: whether the step of the objective counts.
+    pub(crate) fn new(model: &Model, lattice: bool) -> Self {
         let offset = signed(model, model.offset().clone());
-        let step = model.objective_lattice().filter(|q| *q > Number::ZERO);
+        let step = model.objective_lattice().filter(|q| lattice && *q > Number::ZERO);
         Self { offset, step, best: None, improving: None, threshold: f64::INFINITY }
     }
 
@@ -143,7 +143,7 @@ mod tests {
             };
             builder.column(&[], &spec).unwrap();
         }
-        Target::new(&builder.build())
+        Target::new(&builder.build(), true)
     }
 
     #[test]

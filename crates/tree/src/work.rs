@@ -43,6 +43,7 @@ impl Search {
                 let point = self.checker.advance(ticks)?;
                 self.completed(purpose, point)
             }
+            Job::Probe(_) => self.probe(ticks),
             Job::Tour(tour) => {
                 if tour.advance(ticks) {
                     self.toured();
@@ -124,25 +125,19 @@ impl Search {
 
     /// Takes a node in hand: its bounds, its parent's basis, its LP.
     fn begin(&mut self, node: NodeId) -> Option<Progress> {
-        let Some(relaxation) = &mut self.relaxation else {
+        if self.relaxation.is_none() {
             let trouble = self.ledger.trouble.clone();
             return self.root_stopped(trouble);
-        };
+        }
+        if let Some(progress) = self.narrow(node) {
+            return progress;
+        }
+        let Some(relaxation) = &mut self.relaxation else { return None };
         let path = self.tree.path(node);
         let parent = self.tree.node(node).parent();
         relaxation.enter(&path);
         relaxation.load(parent.and_then(|parent| self.tree.node(parent).basis.as_deref()));
-        self.hand = Some(Hand {
-            node,
-            iterations_before: relaxation.simplex.stats().iterations,
-            rows_added: 0,
-            rounds: 0,
-            accepted: None,
-            point: None,
-            proved: None,
-            exact: false,
-            tried: false,
-        });
+        self.hand = Some(Hand::new(node, relaxation.simplex.stats().iterations));
         self.solve()
     }
 

@@ -97,7 +97,7 @@ pub(crate) struct Document {
 #[derive(Debug)]
 pub(crate) enum DocumentAction {
     /// A scenario is opened in place of this one.
-    Open(Scenario),
+    Open(Box<Scenario>),
     /// The last change is taken back.
     Undo,
     /// What was taken back is done again.
@@ -319,7 +319,7 @@ impl Document {
     pub(crate) fn apply(self: Rc<Self>, action: DocumentAction) -> Rc<Self> {
         let mut document = (*self).clone();
         match action {
-            DocumentAction::Open(scenario) => return document.open_another(scenario).into(),
+            DocumentAction::Open(scenario) => return document.open_another(*scenario).into(),
             DocumentAction::Undo | DocumentAction::Redo => return self,
             DocumentAction::Notes(notes) => document.notes = Shared::new(notes),
             DocumentAction::Title(title) => {

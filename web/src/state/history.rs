@@ -185,7 +185,10 @@ mod tests {
             DocumentAction::Remove(LaneId(2)),
             DocumentAction::Add("atsp/cuts".to_owned()),
             DocumentAction::Notes("why".to_owned()),
-            DocumentAction::Open(Scenario { title: "Other".to_owned(), ..Scenario::default() }),
+            DocumentAction::Open(Box::new(Scenario {
+                title: "Other".to_owned(),
+                ..Scenario::default()
+            })),
         ];
         let count = changes.len();
         let mut seen = vec![first.edited()];

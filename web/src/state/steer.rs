@@ -1,7 +1,7 @@
 //! Acts by hand in the document: what a person did to a rival's search. They belong to one tree: a
 //! change of what that tree is made of forgets them.
 
-use record::scenario::{Act, ActKind, BranchingRule, Rival, Run};
+use record::scenario::{Act, ActKind, BranchingRule, Rival, Run, Selection};
 use report::number::of;
 
 use crate::state::document::Document;
@@ -21,6 +21,8 @@ pub(crate) enum Steer {
     GoOn(LaneId),
     /// Rivals are searched by another branching rule.
     Rule(BranchingRule),
+    /// Rivals are searched by another rule for the next node.
+    Next(Selection),
 }
 
 impl Steer {
@@ -32,6 +34,7 @@ impl Steer {
             Self::Forget(_) => "acts that were forgotten",
             Self::GoOn(_) => "stop that was taken back",
             Self::Rule(_) => "branching rule",
+            Self::Next(_) => "rule for the next node",
         }
     }
 }
@@ -50,6 +53,10 @@ impl Document {
             Steer::GoOn(id) => self.acts(id, |acts| acts.retain(|act| act.what != ActKind::Stop)),
             Steer::Rule(branching) => {
                 self.run = Shared::new(Run { branching, ..(*self.run).clone() });
+                self.forget_acts();
+            }
+            Steer::Next(selection) => {
+                self.run = Shared::new(Run { selection, ..(*self.run).clone() });
                 self.forget_acts();
             }
         }

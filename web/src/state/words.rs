@@ -182,6 +182,7 @@ mod tests {
             solution: Vec::new(),
             checked: true,
             stopped: Some("node limit".to_owned()),
+            node_work: record::results::NodeWorkReport::default(),
         }
     }
 

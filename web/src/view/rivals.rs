@@ -16,7 +16,7 @@ use crate::state::pointer::Shared;
 use crate::view::axis::{AxisView, Best};
 use crate::view::hands::{Hands, use_hands};
 use crate::view::lane::LaneView;
-use crate::view::rule::rule;
+use crate::view::rule::rules;
 
 /// Hues, after which they come again.
 pub(crate) const HUES: usize = 6;
@@ -157,7 +157,7 @@ fn for_all(document: &Document, board: &Board, hands: &Hands) -> Html {
     };
     html! {
         <div class="acts" role="group" aria-label="All rivals">
-            { rule(document.run.branching, hands) }
+            { rules(document.run.branching, document.run.selection, hands) }
             <button type="button" data-testid="run-all" onclick={run}>{ "Run all" }</button>
             <button type="button" data-testid="stop-all" onclick={stop}>{ "Stop all" }</button>
         </div>

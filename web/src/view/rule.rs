@@ -1,6 +1,6 @@
-//! The branching rule of all rivals: which variable a node is branched on.
+//! The rules of all rivals: which variable a node is branched on, and which open node comes next.
 
-use record::scenario::BranchingRule;
+use record::scenario::{BranchingRule, Selection};
 use web_sys::HtmlSelectElement;
 use yew::prelude::*;
 
@@ -9,32 +9,52 @@ use crate::state::steer::Steer;
 use crate::view::hands::Hands;
 
 /// The rules that are offered, each with a word for people.
-const RULES: [(BranchingRule, &str); 3] = [
+const RULES: [(BranchingRule, &str); 5] = [
     (BranchingRule::MostFractional, "most fractional"),
     (BranchingRule::Pseudocost, "pseudocost"),
+    (BranchingRule::Strong, "strong"),
+    (BranchingRule::Reliability, "reliability"),
     (BranchingRule::ByHand, "by hand"),
 ];
 
-/// The choice; a rule that this version does not have stands as what is used in its place.
-pub(crate) fn rule(rule: BranchingRule, hands: &Hands) -> Html {
-    let used = if RULES.iter().any(|(known, _)| *known == rule) {
-        rule
-    } else {
-        BranchingRule::Pseudocost
-    };
+/// The rules for the next node.
+const NEXT: [(Selection, &str); 3] = [
+    (Selection::BestBound, "best bound"),
+    (Selection::DepthFirst, "depth first"),
+    (Selection::BestEstimate, "best estimate"),
+];
+
+/// Both choices.
+pub(crate) fn rules(branching: BranchingRule, selection: Selection, hands: &Hands) -> Html {
+    html! {
+        <>
+            { choice(("branching", "rule"), &RULES, branching, Steer::Rule, hands) }
+            { choice(("next node", "next"), &NEXT, selection, Steer::Next, hands) }
+        </>
+    }
+}
+
+/// One choice, with its name and the mark that tests find it by.
+fn choice<T: Copy + PartialEq + 'static>(
+    (name, mark): (&'static str, &'static str),
+    known: &'static [(T, &'static str)],
+    used: T,
+    steer: fn(T) -> Steer,
+    hands: &Hands,
+) -> Html {
     let document = hands.document.clone();
     let onchange = Callback::from(move |event: Event| {
         let select: HtmlSelectElement = event.target_unchecked_into();
-        if let Some((rule, _)) = RULES.iter().find(|(_, words)| *words == select.value()) {
-            document.dispatch(DocumentAction::Steer(Steer::Rule(*rule)));
+        if let Some((rule, _)) = known.iter().find(|(_, words)| *words == select.value()) {
+            document.dispatch(DocumentAction::Steer(steer(*rule)));
         }
     });
     html! {
         <label class="family" title="Another rule searches every rival anew.">
-            { "branching" }
-            <select data-testid="rule" {onchange}>
-                for (known, words) in RULES {
-                    <option value={words} selected={known == used}>{ words }</option>
+            { name }
+            <select data-testid={mark} {onchange}>
+                for (rule, words) in known {
+                    <option value={*words} selected={*rule == used}>{ *words }</option>
                 }
             </select>
         </label>

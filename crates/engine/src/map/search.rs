@@ -1,7 +1,9 @@
 //! What a search gave, so far or at its end.
 
 use model::{ColumnId, Model};
-use record::results::{ConflictLevel, ConflictReport, SearchReport, SolutionEntry, Status, WAITS};
+use record::results::{
+    ConflictLevel, ConflictReport, NodeWorkReport, SearchReport, SolutionEntry, Status, WAITS,
+};
 
 use super::{finite, status, tidy};
 
@@ -25,6 +27,11 @@ pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchRepor
         solution: solution(model, &summary.solution),
         checked: summary.checked,
         stopped: if paused { Some(rest(search).to_owned()) } else { summary.stopped },
+        node_work: NodeWorkReport {
+            closed: summary.node_work.closed,
+            tightened: summary.node_work.tightened,
+            fixed: summary.node_work.fixed,
+        },
     }
 }
 
@@ -47,6 +54,7 @@ pub(crate) fn nothing_searched(why: &str) -> SearchReport {
         solution: Vec::new(),
         checked: false,
         stopped: Some(why.to_owned()),
+        node_work: NodeWorkReport::default(),
     }
 }
 

@@ -18,8 +18,20 @@ const SCENARIO: [&str; 10] =
 const INSTANCE: [&str; 4] = ["reader", "title", "text", "bind"];
 const RIVAL: [&str; 7] = ["title", "from", "text", "mps", "role", "families", "act"];
 const ACT: [&str; 4] = ["after", "do", "node", "on"];
-const RUN: [&str; 8] =
-    ["search", "nodes", "iterations", "seconds", "best_known", "branching", "selection", "cuts"];
+const RUN: [&str; 10] = [
+    "search",
+    "nodes",
+    "iterations",
+    "seconds",
+    "best_known",
+    "branching",
+    "selection",
+    "priority",
+    "node_work",
+    "cuts",
+];
+const NODE_WORK: [(&str, ()); 3] =
+    [("propagation", ()), ("reduced costs", ()), ("objective step", ())];
 const CUTS: [(&str, ()); 7] = [
     ("on demand", ()),
     ("gomory", ()),
@@ -282,6 +294,11 @@ impl Decoder<'_> {
         for cut in cuts.iter().flatten() {
             found.word(cut, span.clone(), "cuts", &CUTS);
         }
+        let node_work = found.texts(table, "node_work");
+        let span = table.get("node_work").map(Spanned::span).unwrap_or_default();
+        for work in node_work.iter().flatten() {
+            found.word(work, span.clone(), "node_work", &NODE_WORK);
+        }
         Run {
             search: found.flag(table, "search").unwrap_or(usual.search),
             nodes: found.whole(table, "nodes").unwrap_or(usual.nodes),
@@ -290,6 +307,8 @@ impl Decoder<'_> {
             best_known: found.number(table, "best_known"),
             branching: found.choice(table, "branching", &BRANCHING).unwrap_or_default(),
             selection: found.choice(table, "selection", &SELECTION).unwrap_or_default(),
+            priority: found.texts(table, "priority").unwrap_or_default(),
+            node_work,
             cuts,
         }
     }

@@ -130,6 +130,12 @@ impl Printer {
         if run.selection != usual.selection {
             self.text("selection", word(&SELECTION, run.selection));
         }
+        if !run.priority.is_empty() {
+            self.pair("priority", &list(&run.priority));
+        }
+        if let Some(work) = &run.node_work {
+            self.pair("node_work", &list(work));
+        }
         if let Some(cuts) = &run.cuts {
             self.pair("cuts", &list(cuts));
         }

@@ -229,9 +229,11 @@ fn run() -> impl Strategy<Value = Run> {
     let selection = prop::sample::select(decode::SELECTION.map(|(_, rule)| rule).to_vec());
     let cuts =
         option::of(vec(prop::sample::select(vec!["gomory".to_owned(), "mir".to_owned()]), 0..3));
+    let works = vec!["propagation".to_owned(), "reduced costs".to_owned()];
+    let lists = (cuts, option::of(vec(prop::sample::select(works), 0..3)), vec("\\PC{1,5}", 0..3));
     let limits = (any::<u32>(), any::<u64>(), 0.0..1e6);
-    (any::<bool>(), limits, option::of(finite()), branching, selection, cuts).prop_map(
-        |(search, (nodes, iterations, seconds), best_known, branching, selection, cuts)| Run {
+    (any::<bool>(), limits, option::of(finite()), branching, selection, lists).prop_map(
+        |(search, (nodes, iterations, seconds), best_known, branching, selection, lists)| Run {
             search,
             nodes,
             iterations,
@@ -239,7 +241,9 @@ fn run() -> impl Strategy<Value = Run> {
             best_known,
             branching,
             selection,
-            cuts,
+            priority: lists.2,
+            node_work: lists.1,
+            cuts: lists.0,
         },
     )
 }

@@ -97,7 +97,9 @@ fn fields(root: &RootReport) -> impl serde::Serialize + '_ {
 }
 
 fn of_search(search: &SearchReport) -> String {
-    hashed(&SearchReport { stopped: None, ..search.clone() })
+    let outcome = (search.status, search.bound, search.incumbent, search.gap);
+    let counts = (search.nodes, search.open, search.iterations, search.work);
+    hashed(&(outcome, counts, &search.solution, search.checked, None::<&str>))
 }
 
 fn hashed(value: &impl serde::Serialize) -> String {
@@ -107,7 +109,7 @@ fn hashed(value: &impl serde::Serialize) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::results::Proof;
+    use crate::results::{NodeWorkReport, Proof};
 
     fn root(bound: f64) -> RootReport {
         RootReport {
@@ -133,6 +135,7 @@ mod tests {
             solution: Vec::new(),
             checked: true,
             stopped: stopped.map(str::to_owned),
+            node_work: NodeWorkReport::default(),
         }
     }
 

@@ -4,13 +4,13 @@ use std::rc::Rc;
 
 use model::{ColumnId, Model, ModelBuilder, Sense};
 
-use super::support::{Random, enumerated, random_model, row, rules, run, spec};
+use super::support::{Random, enumerated, random_model, row, rules, run, spec, working};
 use crate::Status;
 
 fn agrees(model: &Rc<Model>, name: &str) {
     let expected = enumerated(model);
     let pure = model.columns().iter().all(|c| c.integer);
-    for settings in rules() {
+    for settings in rules().into_iter().chain(working()) {
         let (_, summary) = run(model, &settings, u64::MAX);
         let place = format!("{name}, {settings:?}: {summary:?}, expected {expected:?}");
         match expected {

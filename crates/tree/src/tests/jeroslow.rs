@@ -20,9 +20,15 @@ fn instance(n: i64) -> Rc<Model> {
     Rc::new(builder.build())
 }
 
+/// `C(n, n/2)`.
+fn binomial(n: i64) -> i64 {
+    (1..=n / 2).fold(1, |product, k| product * (n / 2 + k) / k)
+}
+
 #[test]
 fn the_tree_has_the_known_size() {
-    for (n, nodes) in [(3, 11), (5, 39), (7, 139), (9, 503)] {
+    for n in [3, 5, 7, 9, 11, 13] {
+        let nodes = u32::try_from(2 * binomial(n + 1) - 1).unwrap();
         for settings in rules() {
             let (events, summary) = run(&instance(n), &settings, u64::MAX);
             assert_eq!(summary.nodes, nodes, "n = {n}, {settings:?}");

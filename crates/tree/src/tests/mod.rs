@@ -9,6 +9,7 @@ mod enumeration;
 mod eye;
 mod inspection;
 mod jeroslow;
+mod node_work;
 mod slices;
 pub(crate) mod support;
 mod trips;

@@ -4,7 +4,7 @@ use std::rc::Rc;
 
 use model::{Model, Sense};
 
-use super::support::{Form, Random, finish, random_model, round_trip, rules, run};
+use super::support::{Form, Random, finish, random_model, round_trip, rules, run, working};
 use crate::{Event, Progress, Search, Settings};
 
 fn models() -> Vec<(String, Rc<Model>)> {
@@ -20,7 +20,7 @@ fn models() -> Vec<(String, Rc<Model>)> {
 #[test]
 fn every_slice_size_gives_the_same_events() {
     for (name, model) in models() {
-        for settings in rules() {
+        for settings in rules().into_iter().chain(working()) {
             let (events, summary) = run(&model, &settings, u64::MAX);
             for ticks in [1, 7, 1000] {
                 let (same, again) = run(&model, &settings, ticks);

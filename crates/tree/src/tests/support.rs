@@ -9,14 +9,35 @@ use model::{
 };
 
 use crate::relaxation::{direction, problem};
-use crate::{Branching, Event, Progress, Search, Selection, Settings, Summary};
+use crate::{Branching, Event, NodeWork, Progress, Search, Selection, Settings, Summary};
 
-/// The four pairs of rules.
+/// Every pair of rules that needs no person.
 pub(crate) fn rules() -> Vec<Settings> {
+    let branchings = [
+        Branching::MostFractional,
+        Branching::Pseudocost,
+        Branching::Strong,
+        Branching::Reliability,
+    ];
+    let selections = [Selection::BestBound, Selection::DepthFirst, Selection::BestEstimate];
     let mut all = Vec::new();
-    for branching in [Branching::MostFractional, Branching::Pseudocost] {
-        for selection in [Selection::BestBound, Selection::DepthFirst] {
+    for branching in branchings {
+        for selection in selections {
             all.push(Settings { branching, selection, ..Settings::default() });
+        }
+    }
+    all
+}
+
+/// A pair of rules under every choice of node work that tightens bounds.
+pub(crate) fn working() -> Vec<Settings> {
+    let mut all = Vec::new();
+    for (propagation, fixing) in [(true, false), (false, true), (true, true)] {
+        for selection in [Selection::BestBound, Selection::BestEstimate] {
+            let node_work =
+                NodeWork { propagation, fixing, lattice: selection == Selection::BestBound };
+            let branching = Branching::Reliability;
+            all.push(Settings { branching, selection, node_work, ..Settings::default() });
         }
     }
     all

@@ -126,6 +126,7 @@ mod tests {
                 solution: Vec::new(),
                 checked: false,
                 stopped: Some(stopped.to_owned()),
+                node_work: record::results::NodeWorkReport::default(),
             }))
         };
         let mut lane = lane();

@@ -224,7 +224,7 @@ pub(crate) fn use_links(act: &Callback<DocumentAction>, say: &Callback<Notice>) 
             EventListener::new(&window, "hashchange", move |_| match from_fragment(&fragment()) {
                 Some(Ok(scenario)) => {
                     say.emit(Notice::opened(&scenario, "the link"));
-                    act.emit(DocumentAction::Open(scenario));
+                    act.emit(DocumentAction::Open(Box::new(scenario)));
                 }
                 Some(Err(refusal)) => say.emit(Notice::refusal(refusal)),
                 None => {}

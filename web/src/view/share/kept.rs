@@ -135,7 +135,7 @@ fn Line(props: &LineProps) -> Html {
             match read(&kept.text, &kept.name) {
                 Ok(scenario) => {
                     say.emit(Notice::opened(&scenario, "this browser"));
-                    act.emit(DocumentAction::Open(scenario));
+                    act.emit(DocumentAction::Open(Box::new(scenario)));
                 }
                 Err(refusal) => say.emit(Notice::refusal(refusal)),
             }

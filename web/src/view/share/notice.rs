@@ -74,7 +74,7 @@ pub(crate) fn NoticeView(props: &NoticeProps) -> Html {
     let start = {
         let (act, hide) = (props.act.clone(), props.hide.clone());
         Callback::from(move |_: MouseEvent| {
-            act.emit(DocumentAction::Open(demo()));
+            act.emit(DocumentAction::Open(Box::new(demo())));
             hide.emit(());
         })
     };

@@ -103,7 +103,7 @@ fn take(name: &str, text: String, act: &Callback<DocumentAction>, say: &Callback
     match read(&text, name) {
         Ok(scenario) => {
             say.emit(Notice::opened(&scenario, name));
-            act.emit(DocumentAction::Open(scenario));
+            act.emit(DocumentAction::Open(Box::new(scenario)));
         }
         Err(refusal) => say.emit(Notice::refusal(refusal)),
     }

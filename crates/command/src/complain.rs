@@ -1,4 +1,5 @@
-//! Complaints on standard error: `file:line:column: error: message (mend)`.
+//! Complaints on standard error: `file:line:column: error: message (mend) [code]`, the code where
+//! `hullward help` knows it.
 
 use std::io::{Result, Write};
 
@@ -22,11 +23,13 @@ pub(crate) fn complain(
             write!(err, "(line {} of this text) ", complaint.line)?;
         }
         write!(err, "{}", complaint.message)?;
-        if complaint.mend.is_empty() {
-            writeln!(err)?;
-        } else {
-            writeln!(err, " ({})", complaint.mend)?;
+        if !complaint.mend.is_empty() {
+            write!(err, " ({})", complaint.mend)?;
         }
+        if !engine::explanation(&complaint.code).meaning.is_empty() {
+            write!(err, " [{}]", complaint.code)?;
+        }
+        writeln!(err)?;
     }
     Ok(())
 }

@@ -46,6 +46,7 @@ hullward: rival integer formulations side by side on your own data.
   hullward list [ID]      the shipped formulations, or the text of one
   hullward digest FILE    one line a rival that two machines can compare
   hullward help [CALL]    more on one of them
+  hullward help CODE      what the code of a complaint means, with an example
   hullward --version      the version of the engine
 
 FILE is a file, - for standard input, or a link of the page (https://…#s1.…).

@@ -7,6 +7,7 @@ mod clock;
 mod complain;
 mod digest;
 mod ending;
+mod explain;
 mod help;
 mod list;
 mod options;
@@ -49,6 +50,7 @@ fn main() -> ExitCode {
 fn carry_out(call: &Call, out: &mut dyn Write, err: &mut dyn Write) -> std::io::Result<Ending> {
     match call {
         Call::Help(topic) => write!(out, "{}", help::text(*topic)).map(|()| Ending::Done),
+        Call::Explain(code) => explain::explain(code, out, err),
         Call::Version => writeln!(out, "hullward {}", engine::VERSION).map(|()| Ending::Done),
         Call::Run(options) => run::run(options, out, err),
         Call::Read(file) => read::read(file, out, err),

@@ -8,12 +8,17 @@ use crate::help::Topic;
 #[derive(Debug, Clone, PartialEq)]
 pub(crate) enum Call {
     Help(Topic),
+    /// What a code means.
+    Explain(String),
     Version,
     Run(RunOptions),
     Read(String),
     Write(WriteOptions),
     List(Option<String>),
-    Digest { file: String, slice: u64 },
+    Digest {
+        file: String,
+        slice: u64,
+    },
 }
 
 /// How `run` is asked for.
@@ -96,9 +101,7 @@ pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
     }
     match call.as_str() {
         "--version" | "-V" => Ok(Call::Version),
-        "help" => {
-            Ok(Call::Help(rest.first().and_then(|word| Topic::of(word)).unwrap_or(Topic::All)))
-        }
+        "help" => Ok(help(rest)),
         word if is_help(word) => Ok(Call::Help(Topic::All)),
         "run" => run(rest).map(Call::Run),
         "read" => one(rest, "read").map(Call::Read),
@@ -106,6 +109,14 @@ pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
         "list" => list(rest),
         "digest" => digest(rest),
         other => Err(unknown("call", other, &CALLS)),
+    }
+}
+
+/// Help on a call or, where the word has the dot of one, on a code.
+fn help(words: &[String]) -> Call {
+    match words.first() {
+        Some(code) if code.contains('.') => Call::Explain(code.clone()),
+        word => Call::Help(word.and_then(|word| Topic::of(word)).unwrap_or(Topic::All)),
     }
 }
 

@@ -5,6 +5,7 @@ use std::collections::BTreeMap;
 
 use instance::Instance;
 use model::Model;
+use notation::syntax::Formulation;
 use notation::{Bound, Checked, Diagnostic, Expansion, Limits, Progress, utf16_range};
 use record::message::{CheckJob, CheckReport, CheckedSize, Complaint, Remark, TextEdit};
 
@@ -19,7 +20,8 @@ const GLANCE: u64 = 400_000;
 pub(crate) fn check(job: &CheckJob, readings: &mut Readings) -> CheckReport {
     let parse = notation::parse(&job.text);
     let (checked, found) = notation::check(&parse.tree);
-    let mut found = [parse.diagnostics, found].concat();
+    let found = [parse.diagnostics.clone(), found].concat();
+    let mut found = notation::offers(&job.text, &parse, &checked, found);
     let mut size = None;
     // An instance that cannot be read is complained of where it stands.
     if let Some(given) = &job.instance
@@ -29,7 +31,7 @@ pub(crate) fn check(job: &CheckJob, readings: &mut Readings) -> CheckReport {
     {
         let (names, assumed) = notation::assumed(&job.text, &checked, instance, &given.bind);
         found.extend(assumed);
-        match expand(&checked, instance, &names) {
+        match expand(&parse.tree, &checked, instance, &names) {
             Ok(None) => {}
             Ok(Some((model, further))) => {
                 size = Some(size_of(&model));
@@ -53,6 +55,7 @@ pub(crate) fn check(job: &CheckJob, readings: &mut Readings) -> CheckReport {
 
 /// The model with its warnings; `None` when it is too large for a glance.
 fn expand(
+    tree: &Formulation,
     checked: &Checked,
     instance: &Instance,
     bind: &BTreeMap<String, String>,
@@ -61,7 +64,10 @@ fn expand(
     let mut expansion = Expansion::new(bound, &BTreeMap::new(), Limits::default());
     match expansion.advance(GLANCE) {
         Progress::Working => Ok(None),
-        Progress::Finished => expansion.finish().map(Some),
+        Progress::Finished => expansion.finish().map(|(model, mut found)| {
+            found.extend(notation::lint(tree, checked, &model));
+            Some((model, found))
+        }),
     }
 }
 

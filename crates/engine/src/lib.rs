@@ -5,6 +5,7 @@
 //! | [`Worker`] | one lane: requests in, slices of work, replies out |
 //! | [`native::run_rival`] | the same worker driven to its end without a page |
 //! | [`log_digest`] | one line that two machines can compare |
+//! | [`explanation`], [`explained`] | what the code of a complaint means, and the codes there are |
 //! | [`prepare`] | the model of a rival, for checks |
 //! | [`mps`](fn@mps), [`latex`], [`notation_text`] | a rival handed over to others |
 //!
@@ -15,6 +16,7 @@
 mod bindings;
 mod check;
 mod digest;
+mod explain;
 mod fault;
 mod handover;
 mod lane;
@@ -29,6 +31,7 @@ mod warm;
 mod worker;
 
 pub use digest::log_digest;
+pub use explain::{explained, explanation};
 pub use handover::{HandOver, Refusal, latex, mps, notation_text};
 pub use left_out::left_out;
 pub use load::prepare;

@@ -6,7 +6,8 @@ use std::rc::Rc;
 
 use instance::Reading;
 use model::{FamilyState, Model};
-use notation::{Diagnostic, Expansion, Limits};
+use notation::syntax::Formulation;
+use notation::{Checked, Diagnostic, Expansion, Limits};
 use record::message::LaneJob;
 use record::results::ErrorReport;
 use record::scenario::{InstanceText, Rival, Scenario};
@@ -29,6 +30,8 @@ pub(crate) enum Loading {
 pub(crate) struct Notation {
     title: String,
     text: String,
+    tree: Formulation,
+    checked: Checked,
     warnings: Vec<Diagnostic>,
     expansion: Expansion,
     reading: Rc<Reading>,
@@ -67,8 +70,9 @@ impl Loading {
             return Err(unreadable(&given.text, &reading));
         };
         let parse = notation::parse(&text);
-        let (checked, mut found) = notation::check(&parse.tree);
-        found.splice(0..0, parse.diagnostics);
+        let (checked, found) = notation::check(&parse.tree);
+        let found = [parse.diagnostics.clone(), found].concat();
+        let mut found = notation::offers(&text, &parse, &checked, found);
         if found.iter().any(Diagnostic::is_error) {
             return Err(not_a_model(&text, &found));
         }
@@ -79,7 +83,9 @@ impl Loading {
         let states = states(&job.rival);
         let expansion = Expansion::new(bound, &states, Limits::default());
         let wanted = job.rival.families.clone();
-        let notation = Notation { title, text, warnings: found, expansion, reading, wanted };
+        let (tree, warnings) = (parse.tree, found);
+        let notation =
+            Notation { title, text, tree, checked, warnings, expansion, reading, wanted };
         Ok(Self::Notation(Box::new(notation)))
     }
 
@@ -107,11 +113,12 @@ impl Loading {
 
 impl Notation {
     fn finish(self) -> Result<Loaded, ErrorReport> {
-        let Self { title, text, mut warnings, expansion, reading, wanted } = self;
+        let Self { title, text, tree, checked, mut warnings, expansion, reading, wanted } = self;
         let (model, further) = expansion
             .finish()
             .map_err(|wrong| not_a_model(&text, &[warnings.clone(), wrong].concat()))?;
         warnings.extend(further);
+        warnings.extend(notation::lint(&tree, &checked, &model));
         let known: Vec<&str> = model.families().iter().map(|family| family.name.as_str()).collect();
         for name in wanted.keys() {
             if !known.contains(&name.as_str()) {

@@ -252,6 +252,7 @@ impl Drive {
                 | Reply::Guide(_)
                 | Reply::Node(_)
                 | Reply::Checked(_)
+                | Reply::Explained(_)
                 | Reply::Written(_)
                 | Reply::Bound(_) => {}
             }

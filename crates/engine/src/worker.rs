@@ -7,6 +7,7 @@ use record::wire::{read_request, write_envelope};
 
 use crate::bindings::bindings;
 use crate::check::check;
+use crate::explain::explanation;
 use crate::fault::fault;
 use crate::handover::handed_over;
 use crate::lane::Lane;
@@ -91,6 +92,7 @@ impl Worker {
                 let report = check(&job, &mut self.readings);
                 self.reply(Reply::Checked(Box::new(report)));
             }
+            Request::Explain(code) => self.reply(Reply::Explained(explanation(&code))),
             Request::Write(form, job) => self.reply(handed_over(form, *job)),
             Request::Bind(job) => {
                 let bound = bindings(&job, &mut self.readings);

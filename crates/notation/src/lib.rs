@@ -4,8 +4,10 @@
 //! |---|---|---|---|
 //! | read | [`parse()`] | a text | a tree with places, and what could not be read |
 //! | check | [`check()`] | a tree | names and shapes resolved |
+//! | linearise | [`offers()`] | what was said of a text | the same with rows that mend it |
 //! | bind | [`bind()`] | that and an instance | all data found, definitions evaluated |
 //! | expand | [`Expansion`] | that | a [`model::Model`], in slices |
+//! | look for pitfalls | [`lint()`] | tree, names and model | warnings with figures and mends |
 //! | print | [`print()`], [`latex()`] | a tree | Unicode text or LaTeX that reads back as the same tree |
 //! | set | [`typeset()`] | a tree | rows of MathML, as a tree |
 //!
@@ -18,14 +20,18 @@ mod diagnostic;
 mod evaluate;
 mod expand;
 mod guide;
+mod help;
 mod latex;
 mod lex;
+mod linearise;
+mod lint;
 mod matching;
 pub mod mathml;
 mod parse;
 mod place;
 mod plan;
 pub mod print;
+mod rewrite;
 pub mod syntax;
 
 use std::collections::BTreeMap;
@@ -35,7 +41,10 @@ pub use check::{Checked, check};
 pub use diagnostic::{Diagnostic, Edit, Mend, Severity};
 pub use expand::{Expansion, Limits, Progress, States};
 pub use guide::{Section, guide};
+pub use help::{Help, codes, help};
 pub use latex::latex;
+pub use linearise::offers;
+pub use lint::lint;
 pub use matching::{Found, Match, Offer, assumed, matches};
 pub use mathml::typeset;
 pub use parse::{NESTING_LIMIT, Parse, TEXT_LIMIT, parse};
@@ -56,14 +65,15 @@ pub fn model(
     states: &States,
 ) -> Result<(model::Model, Vec<Diagnostic>), Vec<Diagnostic>> {
     let parsed = parse(text);
-    let (checked, mut found) = check(&parsed.tree);
-    found.extend(parsed.diagnostics);
-    let mut found = diagnostic::tidy(found);
+    let (checked, found) = check(&parsed.tree);
+    let found = [parsed.diagnostics.clone(), found].concat();
+    let mut found = diagnostic::tidy(offers(text, &parsed, &checked, found));
     if found.iter().any(Diagnostic::is_error) {
         return Err(found);
     }
     let bound = bind(&checked, instance, names)?;
     let (model, warnings) = Expansion::new(bound, states, Limits::default()).finish()?;
     found.extend(warnings);
+    found.extend(lint(&parsed.tree, &checked, &model));
     Ok((model, diagnostic::tidy(found)))
 }

@@ -26,6 +26,8 @@ pub enum Request {
     Guide,
     /// Check a formulation while it is typed. Answered by [`Reply::Checked`].
     Check(Box<CheckJob>),
+    /// Tell what the code of a complaint means. Answered by [`Reply::Explained`].
+    Explain(String),
     /// Hand a rival over to others, all at once. Answered by [`Reply::Written`].
     Write(Form, Box<LaneJob>),
     /// Say which data each rival takes from an instance. Answered by [`Reply::Bound`].
@@ -156,6 +158,8 @@ pub enum Reply {
     Guide(Vec<GuideSection>),
     /// What is to be said of a formulation as it is typed.
     Checked(Box<CheckReport>),
+    /// What a code means.
+    Explained(Explanation),
     /// A rival handed over.
     Written(Box<Written>),
     /// Which data the rivals take from the instance, by their names.
@@ -291,6 +295,18 @@ pub struct Complaint {
     pub message: String,
     /// How to mend it; may be empty.
     pub mend: String,
+}
+
+/// What the code of a complaint about a formulation means.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Explanation {
+    /// The code, as a complaint carries it.
+    pub code: String,
+    /// What it means and what to do; empty where there is no such code.
+    pub meaning: String,
+    /// An example: lines of a text, those marked `-` only as it fails, those marked `+` only as it
+    /// is mended. May be empty.
+    pub example: String,
 }
 
 /// What is to be said of a formulation as it is typed.

@@ -6,6 +6,7 @@ pub(crate) mod elsewhere;
 pub(crate) mod frame;
 pub(crate) mod handover;
 pub(crate) mod kept;
+pub(crate) mod meanings;
 pub(crate) mod opinions;
 pub(crate) mod run;
 pub(crate) mod session;

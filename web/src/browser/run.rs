@@ -186,6 +186,7 @@ impl LaneRun {
             Reply::Acted(acted) => refusal(&acted, &self.columns).map(LaneAction::Notice),
             Reply::Relaxation(Err(why)) => Some(LaneAction::Second(Opinion::Silent(why))),
             Reply::Checked(_)
+            | Reply::Explained(_)
             | Reply::Relaxation(Ok(_))
             | Reply::Bound(_)
             | Reply::Node(_)

@@ -14,8 +14,8 @@ use std::rc::{Rc, Weak};
 use gloo_timers::callback::Timeout;
 use record::event::NodeNumber;
 use record::message::{
-    BindJob, CheckJob, CheckReport, Complaint, Envelope, GuideSection, InstanceReport, LaneJob,
-    Reply, Request,
+    BindJob, CheckJob, CheckReport, Complaint, Envelope, Explanation, GuideSection, InstanceReport,
+    LaneJob, Reply, Request,
 };
 use record::opinion::Opinion;
 use record::results::ErrorReport;
@@ -25,6 +25,7 @@ use yew::{Callback, UseReducerDispatcher};
 use crate::browser::checks::{Checks, unchecked};
 use crate::browser::clock;
 use crate::browser::frame::Frame;
+use crate::browser::meanings::Meanings;
 use crate::browser::opinions::{Opinions, Told};
 use crate::browser::run::{LaneRun, Led, TreeCell};
 use crate::browser::worker::{FromWorker, WorkerHandle};
@@ -58,6 +59,7 @@ struct Inner {
     checks: Checks,
     guide: Option<Shared<Vec<GuideSection>>>,
     readers: Vec<Callback<Shared<Vec<GuideSection>>>>,
+    meanings: Meanings,
     opinions: Opinions,
     frame: Option<Frame>,
 }
@@ -79,6 +81,7 @@ impl Session {
                 checks: Checks::default(),
                 guide: None,
                 readers: Vec::new(),
+                meanings: Meanings::default(),
                 opinions: Opinions::new(hearing_opinions(session.clone())),
                 frame: None,
             })
@@ -120,6 +123,16 @@ impl Session {
         if let Some(author) = &inner.author {
             // A worker that takes no message tells so by its error event.
             let _ = author.post(&Request::Guide);
+        }
+    }
+
+    /// Asks what the code of a remark means.
+    pub(crate) fn explain(&self, code: &str, hear: Callback<Explanation>) {
+        let mut inner = self.0.borrow_mut();
+        inner.meanings.begin(code, hear);
+        if let Some(author) = &inner.author {
+            // A worker that takes no message tells so by its error event.
+            let _ = author.post(&Request::Explain(code.to_owned()));
         }
     }
 
@@ -424,6 +437,10 @@ impl Session {
                 if let Some(hear) = heard {
                     hear.emit(*report);
                 }
+            }
+            FromWorker::Reply(Envelope { reply: Reply::Explained(found), .. }) => {
+                let heard = self.0.borrow_mut().meanings.end(&found.code);
+                heard.into_iter().for_each(|hear| hear.emit(found.clone()));
             }
             FromWorker::Reply(Envelope { reply: Reply::Failed(error), .. }) => {
                 self.finish_reading(unreadable(error.message));

@@ -8,6 +8,7 @@ use crate::state::pointer::Shared;
 use crate::state::words::{advice, sentence};
 use crate::view::complaints::kind;
 use crate::view::editor_box::{replace, select};
+use crate::view::meaning::Meaning;
 
 /// Remarks shown at once.
 const SHOWN: usize = 12;
@@ -68,6 +69,9 @@ fn one(props: &RemarksProps, remark: &Remark) -> Html {
                 { sentence(&complaint.message) }
                 if told { { " " }<span class="mend">{ advice(&complaint.mend) }</span> }
             </p>
+            if complaint.code.contains('.') {
+                { " " }<Meaning code={complaint.code.clone()} />
+            }
             if props.fresh {
                 for (place, edit) in remark.mends.iter().enumerate() {
                     { " " }{ mend(props, place, edit) }

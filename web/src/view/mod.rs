@@ -24,6 +24,7 @@ mod instances;
 pub(crate) mod lane;
 pub(crate) mod lane_name;
 pub(crate) mod map;
+mod meaning;
 pub(crate) mod notes;
 pub(crate) mod paint;
 pub(crate) mod paste;

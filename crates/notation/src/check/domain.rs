@@ -141,12 +141,7 @@ impl<'t> Checker<'t> {
             match role {
                 Role::Row => {}
                 Role::Domain => {
-                    let bounds = if line.left.len() == 1 {
-                        single_bounds(line)
-                    } else {
-                        listed_bounds(line)
-                    };
-                    for (name, bounds) in bounds {
+                    for (name, bounds) in line_bounds(line) {
                         self.domain(line, name, &bounds);
                     }
                 }
@@ -249,7 +244,7 @@ impl<'t> Checker<'t> {
             Relation::AtLeast => Some(vec![Bounding::Lower(self.data(operand, "a bound")?)]),
             Relation::Equal => Some(vec![Bounding::Fixed(self.data(operand, "a bound")?)]),
             Relation::Less | Relation::Greater | Relation::NotEqual => {
-                self.report(message::strict(operand.span))
+                self.report(message::strict(operand.span, None))
             }
             _ => self.report(message::domain(operand.span)),
         }
@@ -348,7 +343,12 @@ fn declared<'t>(line: &'t Line, role: &Role) -> Vec<&'t Expression> {
     }
 }
 
-type Bounds<'t> = Vec<(&'t Expression, Vec<(Relation, &'t Expression)>)>;
+/// The names of a line with the bounds that it gives them.
+pub(crate) fn line_bounds(line: &Line) -> Bounds<'_> {
+    if line.left.len() == 1 { single_bounds(line) } else { listed_bounds(line) }
+}
+
+pub(crate) type Bounds<'t> = Vec<(&'t Expression, Vec<(Relation, &'t Expression)>)>;
 
 /// `a ≤ x ≤ b`: the name is the one operand that is no symbol.
 fn single_bounds(line: &Line) -> Bounds<'_> {

@@ -7,6 +7,7 @@ use super::{Bound, Checker, Typed};
 use crate::diagnostic::{names, rows as message};
 use crate::place::Span;
 use crate::plan::{FamilyPlan, Root, RowPlan, Slot};
+use crate::print;
 use crate::syntax::{Expression, Line, Relation};
 
 impl<'t> Checker<'t> {
@@ -65,7 +66,8 @@ impl<'t> Checker<'t> {
             match relation {
                 Relation::Equal | Relation::AtMost | Relation::AtLeast => {}
                 Relation::Less | Relation::Greater | Relation::NotEqual => {
-                    return self.report(message::strict(span));
+                    let weak = weak(expressions[k], *relation, expressions[k + 1]);
+                    return self.report(message::strict(span, weak));
                 }
                 _ => return self.report(message::relation(span)),
             }
@@ -82,6 +84,17 @@ impl<'t> Checker<'t> {
         }
         Some(rows)
     }
+}
+
+/// `a ≤ b` for `a < b`; nothing for `a ≠ b`.
+fn weak(left: &Expression, relation: Relation, right: &Expression) -> Option<String> {
+    let sign = match relation {
+        Relation::Less => Relation::AtMost,
+        Relation::Greater => Relation::AtLeast,
+        _ => return None,
+    };
+    let (left, right) = (print::expression(left), print::expression(right));
+    Some(format!("{left} {} {right}", print::sign(sign)))
 }
 
 /// `a ≤ e ≤ b` with constants at both ends is one row.

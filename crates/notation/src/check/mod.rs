@@ -16,6 +16,7 @@ mod order;
 mod sets;
 mod usage;
 
+pub(crate) use domain::line_bounds;
 pub(crate) use family::is_arrow;
 pub(crate) use usage::{children, words};
 
@@ -228,10 +229,23 @@ impl<'t> Checker<'t> {
 
     fn unused(&mut self) {
         let symbols = self.symbols.iter().filter(|s| s.datum && !s.used);
+        let line = |start: u32| {
+            let lines = self.tree.data.iter().chain(&self.tree.statements);
+            lines.map(|line| line.span).find(|span| span.start == start)
+        };
         let mut found: Vec<Diagnostic> =
-            symbols.map(|s| message::unused(&s.name, s.span)).collect();
+            symbols.map(|s| message::unused(&s.name, s.span, line(s.span.start))).collect();
+        // a line of its own, of which nothing else is declared
+        let own = |v: &Variable| match &v.domains[..] {
+            [only] => {
+                let sharing = self.variables.iter().flat_map(|other| &other.domains);
+                let alone = sharing.filter(|d| d.span.start == only.span.start).count() == 1;
+                line(only.span.start).filter(|_| alone)
+            }
+            _ => None,
+        };
         let variables = self.variables.iter().filter(|v| !v.used);
-        found.extend(variables.map(|v| message::variable_in_no_row(&v.name, v.span)));
+        found.extend(variables.map(|v| message::variable_in_no_row(&v.name, v.span, own(v))));
         let unread = self.tree.unread.is_empty();
         if unread && !self.diagnostics.iter().any(Diagnostic::is_error) {
             self.diagnostics.extend(found);

@@ -10,6 +10,7 @@
 //! | `subset.…` | families over subsets |
 //! | `data.…` | what the instance supplies or lacks |
 //! | `size.…` | limits |
+//! | `lint.…` | pitfalls, found in the rows on an instance |
 
 use std::fmt;
 use std::ops::Range;
@@ -17,6 +18,7 @@ use std::ops::Range;
 use crate::place::{Span, line_column};
 
 pub(crate) mod data;
+pub(crate) mod lints;
 pub(crate) mod names;
 pub(crate) mod rows;
 pub(crate) mod shapes;

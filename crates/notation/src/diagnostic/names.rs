@@ -30,7 +30,15 @@ pub(crate) fn twice(name: &str, span: Span, first: Span) -> Diagnostic {
 
 pub(crate) fn ambiguous(word: &str, one: &str, other: &str, span: Span) -> Diagnostic {
     let message = format!("{} can be read as {one} and as {other}", short(word));
-    Diagnostic::error("name.ambiguous", span, message).mend("put spaces between the names")
+    let diagnostic = Diagnostic::error("name.ambiguous", span, message);
+    if span.range().len() != word.len() {
+        return diagnostic.mend("put spaces between the names");
+    }
+    diagnostic.mend_by(format!("read {}", short(one)), span, one).mend_by(
+        format!("read {}", short(other)),
+        span,
+        other,
+    )
 }
 
 pub(crate) fn circular(name: &str, span: Span) -> Diagnostic {
@@ -68,15 +76,22 @@ pub(crate) fn label_twice(label: &str, span: Span, first: Span) -> Diagnostic {
     .mend("give it a label of its own")
 }
 
-pub(crate) fn unused(name: &str, span: Span) -> Diagnostic {
-    Diagnostic::warning("name.unused", span, format!("{} is never used", short(name)))
-        .mend("delete the line")
+pub(crate) fn unused(name: &str, span: Span, line: Option<Span>) -> Diagnostic {
+    let found = Diagnostic::warning("name.unused", span, format!("{} is never used", short(name)));
+    match line {
+        Some(line) => found.mend_by("delete the line", line, ""),
+        None => found.mend("delete the line"),
+    }
 }
 
-pub(crate) fn variable_in_no_row(name: &str, span: Span) -> Diagnostic {
+pub(crate) fn variable_in_no_row(name: &str, span: Span, line: Option<Span>) -> Diagnostic {
     let message =
         format!("the variable {} stands in no constraint and not in the objective", short(name));
-    Diagnostic::warning("name.variable-unused", span, message)
+    let found = Diagnostic::warning("name.variable-unused", span, message);
+    match line {
+        Some(line) => found.mend_by("delete its domain line", line, ""),
+        None => found,
+    }
 }
 
 pub(crate) fn inferred(index: &str, set: &str, span: Span) -> Diagnostic {

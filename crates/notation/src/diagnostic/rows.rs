@@ -4,9 +4,14 @@ use super::Diagnostic;
 use super::syntax::short;
 use crate::place::Span;
 
-pub(crate) fn strict(span: Span) -> Diagnostic {
-    Diagnostic::error("row.strict", span, "a linear model has no strict inequality and no ≠")
-        .mend("use ≤ or ≥")
+/// `weak` is the row with ≤ or ≥ in its place, where there is one.
+pub(crate) fn strict(span: Span, weak: Option<String>) -> Diagnostic {
+    let found =
+        Diagnostic::error("row.strict", span, "a linear model has no strict inequality and no ≠");
+    match weak {
+        Some(weak) => found.mend_by("use ≤ or ≥", span, weak),
+        None => found.mend("use ≤ or ≥"),
+    }
 }
 
 pub(crate) fn relation(span: Span) -> Diagnostic {
@@ -25,9 +30,16 @@ pub(crate) fn not_consecutive(span: Span) -> Diagnostic {
     )
 }
 
-pub(crate) fn no_lower(name: &str, span: Span) -> Diagnostic {
+/// `alone` says that the line begins with this name and bounds no other.
+pub(crate) fn no_lower(name: &str, span: Span, alone: bool) -> Diagnostic {
     let message = format!("{} has an upper bound only, so its lower bound is −∞", short(name));
-    Diagnostic::warning("row.no-lower", span, message).mend("write 0 ≤ where it cannot be negative")
+    let found = Diagnostic::warning("row.no-lower", span, message);
+    let label = "write 0 ≤ where it cannot be negative";
+    if alone {
+        found.mend_by(label, Span { start: span.start, end: span.start }, "0 ≤ ")
+    } else {
+        found.mend(label)
+    }
 }
 
 pub(crate) fn outside(what: &str, span: Span) -> Diagnostic {

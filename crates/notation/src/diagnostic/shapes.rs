@@ -38,7 +38,14 @@ pub(crate) fn product(span: Span, first: Span, second: Span) -> Diagnostic {
     Diagnostic::error("shape.product", span, "the product of two variable terms is not linear")
         .also(first, "the first variable term")
         .also(second, "the second variable term")
-        .mend("replace it by a new variable w with w ≤ the one, w ≤ the other and w ≥ their sum − 1 (both binary)")
+}
+
+pub(crate) fn implication(span: Span) -> Diagnostic {
+    Diagnostic::error(
+        "shape.implication",
+        span,
+        "a row that holds only where a binary has a value is not linear",
+    )
 }
 
 pub(crate) fn quotient(span: Span, under: Span) -> Diagnostic {

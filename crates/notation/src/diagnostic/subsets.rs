@@ -33,8 +33,11 @@ pub(crate) fn condition(span: Span) -> Diagnostic {
 pub(crate) fn empty_member(name: &str, span: Span) -> Diagnostic {
     let message =
         format!("the empty set is one of the subsets {}, and its row is false", short(name));
-    Diagnostic::error("subset.empty-member", span, message)
-        .mend(format!("add the condition |{}| ≥ 1", short(name)))
+    Diagnostic::error("subset.empty-member", span, message).mend_by(
+        format!("add the condition |{}| ≥ 1", short(name)),
+        Span { start: span.end, end: span.end },
+        format!(", |{name}| ≥ 1"),
+    )
 }
 
 pub(crate) fn ranged(span: Span) -> Diagnostic {

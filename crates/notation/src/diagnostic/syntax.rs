@@ -77,5 +77,6 @@ pub(crate) fn joined(span: Span) -> Diagnostic {
         span,
         "the minus can begin a new line or go on with the one before",
     )
-    .mend("put “;” before it for a new line, or end the line before with the minus")
+    .mend_by("put “;” before it for a new line", Span { start: span.start, end: span.start }, "; ")
+    .mend("end the line before with the minus")
 }

@@ -140,7 +140,10 @@ impl Expansion {
         let open =
             |column: &DraftColumn| column.lower.is_none() && column.upper.is_some() && !column.free;
         if draft.columns.iter().any(open) {
-            self.warnings.push(message::no_lower(&variable.name, variable.span));
+            let domains = self.evaluator.plan.variables.iter().flat_map(|other| &other.domains);
+            let line = domains.filter(|domain| domain.span.start == variable.span.start);
+            let alone = line.count() == 1;
+            self.warnings.push(message::no_lower(&variable.name, variable.span, alone));
         }
         for (tuple, column) in draft.tuples.into_iter().zip(draft.columns) {
             if let (Some(lower), Some(upper)) = (&column.lower, &column.upper)

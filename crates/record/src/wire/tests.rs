@@ -102,6 +102,7 @@ fn replies_come_back_with_their_empty_fields() {
         Reply::Batch(vec![Event::Bound { bound: 1.0, nodes: 2 }]),
         Reply::Failed(failed),
         Reply::Written(Box::new(Written { text: "ENDATA\n".to_owned(), notes: Vec::new() })),
+        Reply::Explained(crate::message::Explanation::default()),
         Reply::Checked(Box::new(CheckReport { typeset: typeset(), ..CheckReport::default() })),
         Reply::Acted(Box::new(Acted {
             act: act(),

@@ -1,0 +1,164 @@
+//! What a model does that nobody means: the pitfalls of published formulations, found in the
+//! rows on an instance.
+
+use super::Diagnostic;
+use super::syntax::short;
+use crate::place::Span;
+
+/// Labels that must rise along every drive, the depot's included.
+pub(crate) fn depot_order(family: &str, (nodes, example): (usize, &str), span: Span) -> Diagnostic {
+    let message = format!(
+        "({}) asks the labels to rise along every drive between {nodes} stops, each of which must \
+         be left by one of them ({example}): no round trip can close",
+        short(family)
+    );
+    Diagnostic::warning("lint.depot-order", span, message)
+}
+
+/// Rows that still bind when their drive is not used.
+pub(crate) fn order_m(family: &str, figures: (&str, &str, &str), span: Span) -> Diagnostic {
+    let (row, allowed, possible) = figures;
+    let message = format!(
+        "M in ({}) is too small by one: where the drive is not used, {row} still asks a difference of at \
+         most {allowed}, and the bounds of the labels allow {possible}",
+        short(family)
+    );
+    Diagnostic::warning("lint.order-m", span, message)
+}
+
+/// Rows that ask for no step.
+pub(crate) fn order_step(family: &str, row: &str, span: Span) -> Diagnostic {
+    let message = format!(
+        "M in ({}) is too small by one: {row} lets the label stay the same along a drive that is used, so \
+         circles remain",
+        short(family)
+    );
+    Diagnostic::warning("lint.order-step", span, message)
+}
+
+/// Pairs that exist in one direction only, in rows that leave and enter each node.
+pub(crate) fn one_way(name: &str, pairs: usize, families: (&str, &str), span: Span) -> Diagnostic {
+    let (leave, enter) = families;
+    let message = format!(
+        "none of the {pairs} pairs of {} has its reverse, yet ({}) counts those that leave and ({}) \
+         those that enter: data without direction are used in one direction only",
+        short(name),
+        short(leave),
+        short(enter)
+    );
+    Diagnostic::warning("lint.one-way", span, message).mend(
+        "list each pair in both directions, or count x_{i,j} and x_{j,i} in one row for each node",
+    )
+}
+
+/// Two orders that nothing chooses between.
+pub(crate) fn both_orders(
+    name: &str,
+    (pairs, one, other): (usize, &str, &str),
+    span: Span,
+) -> Diagnostic {
+    let message = format!(
+        "no row holds both orders of a pair of {} ({pairs} pairs, such as {one} and {other}), so both may \
+         be 0 and their rows ask nothing",
+        short(name)
+    );
+    Diagnostic::warning("lint.both-orders", span, message)
+}
+
+/// A constant that switches rows off by more than is needed.
+pub(crate) fn big_m(family: &str, constant: &str, needed: Option<&str>, span: Span) -> Diagnostic {
+    let known = match needed {
+        Some(needed) => format!("; the bounds prove that {needed} is enough"),
+        None => "; no bound tells how large it must be".to_owned(),
+    };
+    let message = format!(
+        "({}) is switched by the constant {constant}: a relaxation pays almost nothing for it, and a \
+         binary of 0.000001 lets {} through{known}",
+        short(family),
+        leak(constant)
+    );
+    Diagnostic::warning("lint.big-m", span, message)
+}
+
+/// A millionth of a whole number, as text.
+fn leak(constant: &str) -> String {
+    let digits: String = constant.chars().filter(char::is_ascii_digit).collect();
+    let padded = format!("{digits:0>7}");
+    let (whole, fraction) = padded.split_at(padded.len() - 6);
+    let fraction = fraction.trim_end_matches('0');
+    if fraction.is_empty() { whole.to_owned() } else { format!("{whole}.{fraction}") }
+}
+
+/// A variable that neither its domain nor any row holds.
+pub(crate) fn free(name: &str, columns: usize, span: Span) -> Diagnostic {
+    let counted = if columns == 1 {
+        "its one column".to_owned()
+    } else {
+        format!("any of its {columns} columns")
+    };
+    let message = format!(
+        "{} is bounded nowhere: neither its domain nor a row bounds {counted} on either side",
+        short(name)
+    );
+    Diagnostic::warning("lint.free", span, message)
+        .mend("give it a bound, or fix one of its values")
+}
+
+/// A column along which the objective improves and that no row stops.
+pub(crate) fn endless(column: &str, (rows, up): (usize, bool), span: Span) -> Diagnostic {
+    let direction = if up { "grows" } else { "falls" };
+    let stops = if rows == 1 {
+        "its one row does not stop it".to_owned()
+    } else {
+        format!("none of its {rows} rows stops it")
+    };
+    let message = format!(
+        "the objective improves without end as {} {direction}: {stops}",
+        short_tuple(column)
+    );
+    Diagnostic::warning("lint.endless", span, message)
+        .mend("give it a bound, or look at the sign of its cost")
+}
+
+/// Rows that say what others say.
+pub(crate) fn twin_rows(
+    family: &str,
+    (rows, one, other): (usize, &str, &str),
+    span: Span,
+) -> Diagnostic {
+    let message = format!(
+        "{rows} of the rows of ({}) say what another row says, such as {} and {}",
+        short(family),
+        short_tuple(one),
+        short_tuple(other)
+    );
+    Diagnostic::warning("lint.twin-rows", span, message)
+}
+
+/// Columns that the model cannot tell apart.
+pub(crate) fn twin_columns(
+    name: &str,
+    (columns, one, other): (usize, &str, &str),
+    span: Span,
+) -> Diagnostic {
+    let counted = if columns == 1 { "the column".to_owned() } else { format!("{columns} columns") };
+    let have = if columns == 1 { "has" } else { "have" };
+    let message = format!(
+        "{counted} of {} {have} a twin with the same rows, cost and bounds, such as {} and {}: the \
+         search tells them apart in vain",
+        short(name),
+        short_tuple(one),
+        short_tuple(other)
+    );
+    Diagnostic::warning("lint.twin-columns", span, message)
+        .mend("use one variable for both, or order them")
+}
+
+/// Up to 60 characters: a name with its index tuple.
+fn short_tuple(text: &str) -> String {
+    let mut out: String = text.chars().take(60).collect();
+    if out.len() < text.len() {
+        out.push('…');
+    }
+    out
+}

@@ -383,7 +383,7 @@ fn mends_can_be_applied() {
 #[test]
 fn a_name_without_indices_is_mended_to_a_domain_line() {
     use hullward_notation::{check, parse};
-    let text = "minimise\n  z\nsubject to\n  z ≥ 1  (one)\n";
+    let text = "minimise\n  z\nsubject to\n  2 z ≥ 1  (one)\n";
     let (_, found) = check(&parse(text).tree);
     let edit = found[0].mends[0].edit.as_ref().unwrap();
     let mut mended = text.to_owned();
@@ -474,4 +474,19 @@ fn rounded_sums_over_the_subset() {
     let (_, floor) = subsets("", "  x(E(S)) ≤ ⌊|S| / 2⌋ ∀ S ⊆ V : |S| = 3 (rows)");
     let (_, plain) = subsets("", "  x(E(S)) ≤ 1 ∀ S ⊆ V : |S| = 3 (rows)");
     assert_eq!(floor, plain);
+}
+
+/// A named row of one variable was taken for a domain line when the other side was a datum, and
+/// an index on the other side for a variable.
+#[test]
+fn a_named_row_with_a_datum_or_an_index_beside_one_variable_is_a_row() {
+    for right in ["q_i", "2 q_i"] {
+        let text = format!(
+            "data\n  V\n  q_i ∀ i ∈ V\nminimise\n  Σ_{{i ∈ V}} z_i\nsubject to\n  \
+             z_i ≥ {right} ∀ i ∈ V (demand)\n  z_i ≥ −1 ∀ i ∈ V\n"
+        );
+        assert_eq!(made(&text, &kitchen()).row_count(), 5, "{text}");
+    }
+    let text = "minimise\n  Σ_{k ∈ {1..3}} z_k\nsubject to\n  z_k ≥ k ∀ k ∈ {1..3}\n";
+    assert_eq!(made(text, &kitchen()).columns().len(), 3);
 }

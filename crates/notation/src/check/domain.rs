@@ -27,15 +27,15 @@ impl<'t> Checker<'t> {
             tree.statements.iter().map(|l| l.label.is_some() && self.is_domain(l)).collect();
         let mut unlabelled = BTreeSet::new();
         for (line, role) in tree.statements.iter().zip(&roles) {
-            unlabelled.extend(declared(line, role).into_iter().filter_map(text_of));
+            unlabelled.extend(self.declared(line, role).into_iter().filter_map(text_of));
         }
         for ((line, role), labelled) in tree.statements.iter().zip(&mut roles).zip(labelled) {
-            if labelled && is_numbered_domain(line, &unlabelled) {
+            if labelled && self.is_numbered_domain(line, &unlabelled) {
                 *role = Role::Domain;
             }
         }
         for (line, role) in tree.statements.iter().zip(&roles) {
-            for operand in declared(line, role) {
+            for operand in self.declared(line, role) {
                 self.new_variable(operand);
             }
         }
@@ -58,16 +58,34 @@ impl<'t> Checker<'t> {
         });
     }
 
+    /// The operands of a line that declare a variable: data and bound indices do not.
+    fn declared<'l>(&self, line: &'l Line, role: &Role) -> Vec<&'l Expression> {
+        let bound = bound_names(line);
+        let names = declared(line, role).into_iter();
+        names.filter(|operand| self.is_candidate(operand, &bound)).collect()
+    }
+
+    /// A domain line stays one with a label that only numbers it, with a membership, or where no
+    /// other line declares its variables.
+    fn is_numbered_domain(&self, line: &Line, unlabelled: &BTreeSet<String>) -> bool {
+        let number = |label: &str| {
+            let letters = label.chars().filter(|c| c.is_alphabetic()).count();
+            label.starts_with(|c: char| c.is_ascii_digit()) && letters <= 1
+        };
+        let numbered = line.label.as_ref().is_some_and(|label| number(&label.text));
+        let member = line.links.iter().any(|(relation, _)| *relation == Relation::In);
+        let all = self.declared(line, &Role::Domain);
+        let alone = all.into_iter().filter_map(text_of).any(|name| !unlabelled.contains(&name));
+        numbered || member || alone
+    }
+
     /// Whether a line holds one variable, or a list, and constants.
     fn is_domain(&self, line: &Line) -> bool {
         self.role(&Line { label: None, ..line.clone() }) == Role::Domain
     }
 
     fn role(&self, line: &Line) -> Role {
-        let mut bound = BTreeSet::new();
-        for clause in &line.clauses {
-            usage::of_clause(clause).for_each(|item| bare_names(item, &mut bound));
-        }
+        let bound = bound_names(line);
         let candidate = |e: &Expression| self.is_candidate(e, &bound);
         let constant = |e: &Expression| self.is_constant(e, &bound);
         let operands = operands(line);
@@ -298,20 +316,6 @@ impl<'t> Checker<'t> {
     }
 }
 
-/// A domain line stays one with a label that only numbers it, with a membership, or where no
-/// other line declares its variables.
-fn is_numbered_domain(line: &Line, unlabelled: &BTreeSet<String>) -> bool {
-    let number = |label: &str| {
-        let letters = label.chars().filter(|c| c.is_alphabetic()).count();
-        label.starts_with(|c: char| c.is_ascii_digit()) && letters <= 1
-    };
-    let numbered = line.label.as_ref().is_some_and(|label| number(&label.text));
-    let member = line.links.iter().any(|(relation, _)| *relation == Relation::In);
-    let all = declared(line, &Role::Domain);
-    let alone = all.into_iter().filter_map(text_of).any(|name| !unlabelled.contains(&name));
-    numbered || member || alone
-}
-
 fn text_of(operand: &Expression) -> Option<String> {
     match &operand.kind {
         Kind::Name(name) => Some(name.text.clone()),
@@ -375,6 +379,15 @@ fn listed_bounds(line: &Line) -> Bounds<'_> {
     let bounds: Vec<_> =
         line.links.iter().map(|(relation, operand)| (*relation, operand)).collect();
     line.left.iter().map(|name| (name, bounds.clone())).collect()
+}
+
+/// The bare names of a line's quantifier.
+fn bound_names(line: &Line) -> BTreeSet<&str> {
+    let mut bound = BTreeSet::new();
+    for clause in &line.clauses {
+        usage::of_clause(clause).for_each(|item| bare_names(item, &mut bound));
+    }
+    bound
 }
 
 /// Every bare name in a quantifier: those it binds, and more.

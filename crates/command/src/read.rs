@@ -3,8 +3,8 @@
 use std::io::{Result, Write};
 
 use record::file::{self, Origin};
-use record::message::{InstanceReport, Reply, Request};
-use record::scenario::InstanceText;
+use record::message::{BindJob, FoundBy, InstanceReport, Reply, Request};
+use record::scenario::{InstanceText, Scenario, letter};
 
 use crate::complain::complain;
 use crate::ending::Ending;
@@ -38,10 +38,58 @@ pub(crate) fn read(word: &str, out: &mut dyn Write, err: &mut dyn Write) -> Resu
     for (title, origin, text) in models {
         worst = worst.max(model(&source, *origin, title, text, (out, err))?);
     }
-    for (instance, origin) in scenario.instances().zip(parsed.instance_origins) {
-        worst = worst.max(understand(&source, Some(origin), instance, out, err)?);
+    for (place, (instance, origin)) in scenario.instances().zip(parsed.instance_origins).enumerate()
+    {
+        let ending = understand(&source, Some(origin), instance, out, err)?;
+        if ending == Ending::Done {
+            taken(&scenario, instance, out)?;
+            sizes(&scenario, place, out)?;
+        }
+        worst = worst.max(ending);
     }
     Ok(worst)
+}
+
+/// What the rivals take from an instance under other names than its own.
+fn taken(scenario: &Scenario, instance: &InstanceText, out: &mut dyn Write) -> Result<()> {
+    let mut worker = engine::Worker::new();
+    let job = BindJob { instance: instance.clone(), rivals: scenario.rivals.clone() };
+    worker.handle(Request::Bind(Box::new(job)));
+    while worker.advance(engine::native::USUAL_SLICE) {}
+    for envelope in worker.take() {
+        let Reply::Bound(lines) = envelope.reply else { continue };
+        for line in
+            lines.iter().filter(|line| line.found != FoundBy::Name || !line.problem.is_empty())
+        {
+            let name = &line.name;
+            match (&line.taken, line.problem.is_empty()) {
+                (_, false) => writeln!(out, "  {}", line.problem)?,
+                (Some(taken), _) if line.found == FoundBy::Shape => {
+                    writeln!(out, "  {name} takes {taken}: assumed, {}", line.reason)?;
+                }
+                (Some(taken), _) => writeln!(out, "  {name} takes {taken}: as the scenario says")?,
+                _ => {}
+            }
+        }
+    }
+    Ok(())
+}
+
+/// The models of the rivals on an instance in short; one that does not become a model is left to
+/// `run` to complain of.
+fn sizes(scenario: &Scenario, instance: usize, out: &mut dyn Write) -> Result<()> {
+    for (rival, letter) in (0..scenario.rivals.len()).map(|rival| (rival, letter(rival))) {
+        if scenario.rivals[rival].mps.is_some() {
+            continue;
+        }
+        if let Ok((title, sentences)) = engine::describe(scenario, instance, rival) {
+            writeln!(out, "{letter}  {title}")?;
+            for said in sentences {
+                writeln!(out, "  {said}")?;
+            }
+        }
+    }
+    Ok(())
 }
 
 /// A whole model in MPS.
@@ -88,6 +136,16 @@ fn describe(title: &str, report: &InstanceReport, out: &mut dyn Write) -> Result
     writeln!(out, "{title} (read as {})", report.reader)?;
     for fact in &report.facts {
         writeln!(out, "  {fact}")?;
+    }
+    for fact in &report.statistics {
+        writeln!(out, "  {fact}")?;
+    }
+    if !report.parts.is_empty() {
+        let name = report.reader.as_str();
+        writeln!(out, "  Instances in this file, to be had by reader = \"{name} 2\" and so on:")?;
+        for part in &report.parts {
+            writeln!(out, "    {part}")?;
+        }
     }
     let errors = report.complaints.iter().filter(|complaint| complaint.error).count();
     if !report.usable {

@@ -42,6 +42,7 @@ fn binding(line: Match, problem: String) -> Binding {
         meaning: line.meaning,
         taken: line.taken,
         found: found_by(line.found),
+        reason: line.reason,
         problem,
         offers: offers.collect(),
     }
@@ -58,6 +59,7 @@ fn join(known: &mut Binding, line: &Match, problem: String) {
     if known.taken.is_none() {
         known.taken.clone_from(&line.taken);
         known.found = found_by(line.found);
+        known.reason.clone_from(&line.reason);
     }
 }
 
@@ -109,6 +111,10 @@ mod tests {
         let all = [("I", "depot"), ("J", "village"), ("f", "opening"), ("c", "haul")];
         assert_eq!(names, all.map(|(name, of)| (name, Some(of))));
         assert!(lines.iter().all(|l| l.found == FoundBy::Shape && l.problem.is_empty()));
+        let reasons: Vec<_> = lines.iter().map(|l| l.reason.as_str()).collect();
+        let labels = "the only set that holds the labels of";
+        assert_eq!(reasons[0], format!("{labels} f, c"));
+        assert_eq!(reasons[2], "the only table over 1 index that is free");
     }
 
     #[test]

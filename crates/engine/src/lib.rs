@@ -7,6 +7,7 @@
 //! | [`log_digest`] | one line that two machines can compare |
 //! | [`explanation`], [`explained`] | what the code of a complaint means, and the codes there are |
 //! | [`prepare`] | the model of a rival, for checks |
+//! | [`describe`] | the same in sentences |
 //! | [`mps`](fn@mps), [`latex`], [`notation_text`] | a rival handed over to others |
 //!
 //! Nothing here reads a clock, and nothing runs long without [`Worker::advance`]. What comes
@@ -34,7 +35,7 @@ pub use digest::log_digest;
 pub use explain::{explained, explanation};
 pub use handover::{HandOver, Refusal, latex, mps, notation_text};
 pub use left_out::left_out;
-pub use load::prepare;
+pub use load::{describe, prepare};
 pub use mps::{looks_like_mps, mps_report};
 pub use worker::Worker;
 

@@ -142,6 +142,19 @@ pub fn prepare(scenario: &Scenario, rival: usize) -> Result<Rc<Model>, ErrorRepo
     load(scenario, (0, rival)).map(|loaded| loaded.model)
 }
 
+/// Title and size of a rival's model on an instance, both by place, in sentences.
+///
+/// # Errors
+/// As the replies of a worker give them.
+pub fn describe(
+    scenario: &Scenario,
+    instance: usize,
+    rival: usize,
+) -> Result<(String, Vec<String>), ErrorReport> {
+    let loaded = load(scenario, (instance, rival))?;
+    Ok((loaded.title, loaded.model.describe()))
+}
+
 /// A rival on an instance, both by place, all at once.
 ///
 /// # Errors

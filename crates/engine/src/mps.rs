@@ -47,6 +47,7 @@ pub fn mps_report(text: &str) -> InstanceReport {
             title: model.title().to_owned(),
             usable: true,
             facts: facts(&model),
+            statistics: model.describe(),
             complaints,
             ..report
         },

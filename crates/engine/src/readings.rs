@@ -5,7 +5,7 @@ use std::rc::Rc;
 use instance::{Reader, Reading};
 use record::message::InstanceReport;
 use record::results::ErrorReport;
-use record::scenario::InstanceText;
+use record::scenario::{InstanceText, reader_and_part};
 
 use crate::fault::unknown;
 use crate::map::instance_report;
@@ -37,11 +37,11 @@ impl Readings {
         {
             return Ok(Rc::clone(reading));
         }
-        let reader = match text.reader.as_deref() {
-            None => None,
-            Some(name) => Some(reader(name)?),
+        let (reader, part) = match text.reader.as_deref().map(reader_and_part) {
+            None => (None, None),
+            Some((name, part)) => (Some(reader(name)?), part),
         };
-        let reading = Rc::new(instance::read(&text.text, reader));
+        let reading = Rc::new(instance::read_part(&text.text, reader, part));
         self.last = Some((text.reader.clone(), text.text.clone(), Rc::clone(&reading)));
         Ok(reading)
     }
@@ -71,7 +71,7 @@ fn is_mps(text: &InstanceText) -> bool {
 }
 
 fn reader(name: &str) -> Result<Reader, ErrorReport> {
-    let known: Vec<&str> = Reader::ALL.iter().map(|reader| reader.name()).collect();
+    let known: Vec<&str> = Reader::all().map(Reader::name).collect();
     Reader::from_name(name).ok_or_else(|| unknown("instance", "reader", name, &known))
 }
 

@@ -13,11 +13,11 @@ use std::collections::BTreeMap;
 use std::ops::Range;
 
 use crate::MAX_STOPS;
-use crate::cells::{Cell, Separator, Style, split, style};
+use crate::cells::{Cell, Separator, Style, number, split, style};
 use crate::complaint::{Complaints, excerpt, grouped, plural};
 use crate::facts;
 use crate::instance::{Datum, Instance, Reader};
-use crate::number::{Number, number_text, parse};
+use crate::number::{number_text, parse};
 use crate::square::Square;
 use crate::text::{Line, lines};
 
@@ -147,8 +147,13 @@ fn body(all: &[Line], from: usize) -> Range<usize> {
 fn equation(value: Line, sink: &mut Complaints) -> Datum {
     let cells = split(&value, Separator::Space);
     if let [cell] = cells.as_slice() {
-        let number = parse(&cell.text, false).or_else(|_| parse(&cell.text, true));
-        return number.map_or_else(|_| Datum::Element(cell.text.to_string()), Datum::Number);
+        for comma in [false, true] {
+            if let Ok(number) = parse(&cell.text, comma) {
+                sink.met(cell, comma, &number);
+                return Datum::Number(number);
+            }
+        }
+        return Datum::Element(cell.text.to_string());
     }
     let span = cells.first().map_or(value.start, |c| c.span.start)..value.end();
     let mend = "Write one number or one label; put a label with blanks in double quotes.";
@@ -199,7 +204,7 @@ fn by(lines: &[Line], arity: usize, entries: &mut usize, sink: &mut Complaints) 
             continue;
         }
         if numbers {
-            if let Some(number) = number(&row[arity], style, sink) {
+            if let Some(number) = number(&row[arity], style.decimal_comma, sink) {
                 cells.insert(key, number);
             }
         } else {
@@ -225,21 +230,6 @@ fn given_twice(line: Line, key: &[String], first: &Range<usize>, sink: &mut Comp
     let message = format!("({}) is given twice", excerpt(&key.join(", ")));
     let mend = format!("Keep one of the lines; the first is line {}.", sink.place(first.start).0);
     sink.error(line.span(), "tuple-twice", message, mend);
-}
-
-fn number(cell: &Cell, style: Style, sink: &mut Complaints) -> Option<Number> {
-    match parse(&cell.text, style.decimal_comma) {
-        Ok(number) => Some(number),
-        Err(_) if sink.is_full() => {
-            sink.count_error();
-            None
-        }
-        Err(why) => {
-            let message = format!("`{}` is not a number", excerpt(&cell.text));
-            sink.error(cell.span.clone(), "not-a-number", message, why.mend());
-            None
-        }
-    }
 }
 
 /// Says what each datum is (tables only where `tables`); where `V` and `c` make a round trip, adds the habits and what is
@@ -332,7 +322,7 @@ mod tests {
         assert_eq!(instance.get("r"), Some(&Datum::Element(label("Ash"))));
         assert_eq!(instance.get("A"), Some(&Datum::Tuples { arity: 2, rows }));
         assert_eq!(instance.assumed.iter().collect::<Vec<_>>(), ["A"]);
-        let half = Number::from_parts(3.into(), 2_u8.into());
+        let half = crate::Number::from_parts(3.into(), 2_u8.into());
         let cells = BTreeMap::from([(vec![label("Ash")], half)]);
         assert_eq!(instance.get("d"), Some(&Datum::Table { arity: 1, cells }));
         assert!(reading.facts.contains(&label("V is a set of 3 labels.")), "{:?}", reading.facts);

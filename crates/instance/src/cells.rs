@@ -4,7 +4,8 @@ use std::borrow::Cow;
 use std::ops::Range;
 
 use crate::MAX_STOPS;
-use crate::number::parse;
+use crate::complaint::{Complaints, excerpt};
+use crate::number::{Number, parse};
 use crate::text::Line;
 
 /// What stands between cells.
@@ -85,7 +86,7 @@ fn tabs_align_only(lines: &[Line]) -> bool {
 }
 
 fn is_comma_decimal(word: &str) -> bool {
-    word.contains(',')
+    word.matches(',').count() == 1
         && !word.starts_with(',')
         && !word.ends_with(',')
         && parse(word, true).is_ok()
@@ -98,7 +99,8 @@ fn commas_separate(lines: &[Line]) -> bool {
         let mut words = 0;
         for word in line.text.split_whitespace() {
             words += 1;
-            if word.contains(',') && !is_comma_decimal(word) {
+            let grouped = word.contains('.') && parse(word, false).is_ok();
+            if word.contains(',') && !is_comma_decimal(word) && !grouped {
                 return true;
             }
         }
@@ -112,7 +114,8 @@ fn commas_prevail(lines: &[Line], separator: Separator) -> bool {
     for line in lines {
         for cell in split(line, separator) {
             commas += usize::from(is_comma_decimal(&cell.text));
-            points += usize::from(cell.text.contains('.') && parse(&cell.text, false).is_ok());
+            let pointed = cell.text.matches('.').count() == 1;
+            points += usize::from(pointed && parse(&cell.text, false).is_ok());
         }
     }
     commas > points
@@ -190,6 +193,25 @@ fn quoted(rest: &str, separator: Separator) -> Option<(Cow<'_, str>, usize)> {
     }
 }
 
+/// The number of a cell, or a complaint; what was read by habit is remembered.
+pub(crate) fn number(cell: &Cell, decimal_comma: bool, sink: &mut Complaints) -> Option<Number> {
+    match parse(&cell.text, decimal_comma) {
+        Ok(number) => {
+            sink.met(cell, decimal_comma, &number);
+            Some(number)
+        }
+        Err(_) if sink.is_full() => {
+            sink.count_error();
+            None
+        }
+        Err(why) => {
+            let message = format!("`{}` is not a number", excerpt(&cell.text));
+            sink.error(cell.span.clone(), "not-a-number", message, why.mend());
+            None
+        }
+    }
+}
+
 /// Whether a cell says that there is no value.
 pub(crate) fn is_blank(text: &str) -> bool {
     const MARKS: [&str; 10] = ["", "-", "–", "—", "−", ".", "*", "∞", "inf", "na"];
@@ -234,6 +256,9 @@ mod tests {
         assert_eq!(style_of("0 1\t2\n1\t0\t3"), (Separator::Space, false));
         assert_eq!(style_of("a\t1 234\nb\t5"), (Separator::Tab, false));
         assert_eq!(style_of("0,5,7\n5,0,2"), (Separator::Comma, false));
+        assert_eq!(style_of("a 1,234.5 2,345.6\nb 3.5 7,000.1"), (Separator::Space, false));
+        assert_eq!(style_of("1.234,5;2\n3;4,25"), (Separator::Semicolon, true));
+        assert_eq!(style_of("1,234,567;2.5\n3;4"), (Separator::Semicolon, false));
     }
 
     #[test]

@@ -2,6 +2,9 @@
 
 use std::ops::Range;
 
+use crate::cells::Cell;
+use crate::number::{Habit, Number, habit, number_text};
+
 /// How bad it is.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Severity {
@@ -43,12 +46,28 @@ pub(crate) struct Complaints<'a> {
     errors: usize,
     warnings: usize,
     dropped: usize,
+    /// A clock time and a number with marks between thousands, the first of each, as read.
+    habits: [Option<String>; 2],
+    /// The first number with a decimal comma.
+    doubtful: Option<(Range<usize>, String)>,
+    /// Whether some comma cannot stand between thousands.
+    comma_is_sure: bool,
 }
 
 impl<'a> Complaints<'a> {
     pub(crate) fn new(text: &'a str) -> Self {
         let line_starts = crate::text::lines(text).iter().map(|line| line.start).collect();
-        Self { text, line_starts, list: Vec::new(), errors: 0, warnings: 0, dropped: 0 }
+        Self {
+            text,
+            line_starts,
+            list: Vec::new(),
+            errors: 0,
+            warnings: 0,
+            dropped: 0,
+            habits: [None, None],
+            doubtful: None,
+            comma_is_sure: false,
+        }
     }
 
     pub(crate) fn error(
@@ -73,6 +92,43 @@ impl<'a> Complaints<'a> {
         if self.warnings <= KEPT_WARNINGS && !self.is_full() {
             self.add((Severity::Warning, code), span, message.into(), mend.into());
         }
+    }
+
+    /// Remembers a number that was read by habit, or whose comma is in doubt.
+    pub(crate) fn met(&mut self, cell: &Cell, decimal_comma: bool, number: &Number) {
+        let text = &*cell.text;
+        match (habit(text, decimal_comma), text.split_once(',')) {
+            (Some(habit), _) => {
+                let first = &mut self.habits[usize::from(habit == Habit::Thousands)];
+                if first.is_none() {
+                    *first = Some(format!("`{}` is {}", excerpt(text), number_text(number)));
+                }
+            }
+            (None, Some((whole, part))) => {
+                let doubtful = part.len() == 3 && !whole.trim_start_matches('-').starts_with('0');
+                self.comma_is_sure |= !doubtful;
+                self.doubtful.get_or_insert_with(|| (cell.span.clone(), excerpt(text)));
+            }
+            _ => {}
+        }
+    }
+
+    /// Warns when every decimal comma might be a mark between thousands.
+    pub(crate) fn doubt_thousands(&mut self) {
+        if let Some((span, text)) = self.doubtful.take().filter(|_| !self.comma_is_sure) {
+            let message = format!("the comma in `{text}` was read as a decimal comma");
+            let mend = "If it marks thousands, leave it out.";
+            self.warn(span, "perhaps-thousands", message, mend);
+        }
+    }
+
+    /// What was read by habit, a sentence each.
+    pub(crate) fn habits(&self) -> Vec<String> {
+        let [clock, thousands] = &self.habits;
+        let clock = clock.iter().map(|one| format!("Clock times count in minutes: {one}."));
+        let thousands =
+            thousands.iter().map(|one| format!("Marks between thousands were read: {one}."));
+        clock.chain(thousands).collect()
     }
 
     /// Whether further complaints would only be counted. Callers that meet many of a kind ask

@@ -2,7 +2,7 @@
 
 use std::collections::{BTreeMap, BTreeSet};
 
-use crate::cells::{Cell, Style, is_blank, is_word};
+use crate::cells::{self, Cell, Style, is_blank, is_word};
 use crate::complaint::{Complaints, excerpt};
 use crate::instance::Datum;
 use crate::matrix::Row;
@@ -51,18 +51,8 @@ pub(crate) fn tables(
     tables
 }
 
+/// A number; a blank cell has none.
 fn number(cell: &Cell, style: Style, sink: &mut Complaints) -> Option<Number> {
-    match parse(&cell.text, style.decimal_comma) {
-        Ok(number) => Some(number),
-        Err(_) if is_blank(&cell.text) => None,
-        Err(_) if sink.is_full() => {
-            sink.count_error();
-            None
-        }
-        Err(why) => {
-            let message = format!("`{}` is not a number", excerpt(&cell.text));
-            sink.error(cell.span.clone(), "not-a-number", message, why.mend());
-            None
-        }
-    }
+    let blank = is_blank(&cell.text) && parse(&cell.text, style.decimal_comma).is_err();
+    if blank { None } else { cells::number(cell, style.decimal_comma, sink) }
 }

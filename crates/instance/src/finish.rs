@@ -37,6 +37,7 @@ pub(crate) fn finish(reader: Reader, trip: RoundTrip) -> (Instance, Vec<String>)
         if !name.unit.is_empty() {
             instance.units.insert(name.text.clone(), name.unit);
         }
+        instance.assumed.remove(&name.text);
         instance.set(&name.text, table);
     }
     (instance, sentences)

@@ -21,38 +21,78 @@ pub enum Reader {
     Tsplib,
     /// Named blocks.
     Blocks,
+    /// A knapsack of one row.
+    Knapsack,
+    /// A knapsack of several rows: OR-Library mknap.
+    MultiKnapsack,
+    /// Generalised assignment: OR-Library gap.
+    Assignment,
+    /// Sites with capacities: OR-Library cap.
+    Sites,
+    /// Medians of a graph: OR-Library pmed.
+    Medians,
+    /// Weighted tardiness on one machine: OR-Library wt.
+    Tardiness,
+    /// A job shop, by machine and duration.
+    JobShop,
+    /// Quadratic assignment: QAPLIB.
+    Quadratic,
+    /// A graph for colouring: DIMACS.
+    Graph,
+    /// A Steiner tree: SteinLib.
+    Steiner,
+    /// Vehicle routing, its older form.
+    Routing,
 }
+
+/// Each reader, the name by which scenarios choose it, and what a text is taken for.
+const READERS: [(Reader, &str, &str); 18] = [
+    (Reader::Matrix, "matrix", "a distance matrix"),
+    (Reader::Points, "points", "points in the plane"),
+    (Reader::Geographic, "points geographic", "points by latitude and longitude"),
+    (Reader::Arcs, "arcs", "a list of drives"),
+    (Reader::Table, "table", "tables with headings"),
+    (Reader::Tsplib, "tsplib", "a TSPLIB file"),
+    (Reader::Blocks, "blocks", "named blocks"),
+    (Reader::Knapsack, "knapsack", "a knapsack"),
+    (Reader::MultiKnapsack, "multi-knapsack", "a knapsack of several rows"),
+    (Reader::Assignment, "assignment", "generalised assignment"),
+    (Reader::Sites, "sites", "sites with capacities and clients"),
+    (Reader::Medians, "medians", "medians of a graph"),
+    (Reader::Tardiness, "tardiness", "weighted tardiness on one machine"),
+    (Reader::JobShop, "job-shop", "a job shop"),
+    (Reader::Quadratic, "quadratic", "quadratic assignment"),
+    (Reader::Graph, "graph", "a graph for colouring"),
+    (Reader::Steiner, "steiner", "a Steiner tree problem"),
+    (Reader::Routing, "routing", "vehicle routing, n K Q and then q x y"),
+];
 
 impl Reader {
     /// Every reader.
-    pub const ALL: [Self; 7] = [
-        Self::Matrix,
-        Self::Points,
-        Self::Geographic,
-        Self::Arcs,
-        Self::Table,
-        Self::Tsplib,
-        Self::Blocks,
-    ];
+    pub fn all() -> impl Iterator<Item = Self> {
+        READERS.into_iter().map(|(reader, ..)| reader)
+    }
+
+    fn words(self) -> (&'static str, &'static str) {
+        let found = READERS.iter().find(|(reader, ..)| *reader == self);
+        found.map_or(("", ""), |&(_, name, words)| (name, words))
+    }
 
     /// The name by which scenarios choose it.
     #[must_use]
     pub fn name(self) -> &'static str {
-        match self {
-            Self::Matrix => "matrix",
-            Self::Points => "points",
-            Self::Geographic => "points geographic",
-            Self::Arcs => "arcs",
-            Self::Table => "table",
-            Self::Tsplib => "tsplib",
-            Self::Blocks => "blocks",
-        }
+        self.words().0
+    }
+
+    /// What a text that it reads is taken for.
+    pub(crate) fn taken_for(self) -> &'static str {
+        self.words().1
     }
 
     /// The reader of that name, if there is one.
     #[must_use]
     pub fn from_name(name: &str) -> Option<Self> {
-        Self::ALL.into_iter().find(|reader| reader.name() == name)
+        Self::all().find(|reader| reader.name() == name)
     }
 }
 
@@ -259,7 +299,7 @@ mod tests {
 
     #[test]
     fn names_of_readers_round_trip() {
-        for reader in Reader::ALL {
+        for reader in Reader::all() {
             assert_eq!(Reader::from_name(reader.name()), Some(reader));
         }
         assert_eq!(Reader::from_name("spreadsheet"), None);

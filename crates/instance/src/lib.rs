@@ -11,8 +11,9 @@
 //! | [`Reader::Geographic`] | points on the globe: `label latitude longitude` |
 //! | [`Reader::Arcs`] | a list of drives: `from to cost`, with as many cost columns as there are |
 //! | [`Reader::Table`] | tables with headings, copied from a spreadsheet |
-//! | [`Reader::Tsplib`] | a TSPLIB file (Reinelt, ORSA Journal on Computing 3, 1991) of type TSP or ATSP |
+//! | [`Reader::Tsplib`] | a TSPLIB file (Reinelt, ORSA Journal on Computing 3, 1991) of type TSP, ATSP or CVRP |
 //! | [`Reader::Blocks`] | named sets, tables and numbers under headings |
+//! | the others | files of the public libraries: see `library` |
 //!
 //! Matrices, points and TSPLIB files give a round trip: the stops `V`, the distances `c` over
 //! pairs of them, and by habit (see [`Instance::assumed`]) the drives `A`, the root `r` and, on
@@ -31,6 +32,7 @@ mod finish;
 mod geo;
 mod instance;
 mod layout;
+mod library;
 mod matrix;
 mod names;
 mod number;
@@ -38,6 +40,7 @@ mod points;
 mod read;
 mod sniff;
 mod square;
+mod sums;
 mod table;
 mod text;
 mod triangle;
@@ -47,7 +50,7 @@ pub use complaint::{Complaint, Severity};
 pub use instance::{Datum, Instance, Points, Reader};
 pub use layout::{Layout, layout};
 pub use number::{Number, number_text};
-pub use read::{Reading, read};
+pub use read::{Reading, read, read_part};
 
 /// The longest text that is read, in bytes.
 pub const MAX_TEXT: usize = 8 << 20;

@@ -1,6 +1,6 @@
 //! Exact numbers from decimal text, and back.
 
-use dashu_int::{IBig, UBig};
+use dashu_int::{IBig, UBig, ops::BitTest};
 use dashu_ratio::RBig;
 
 /// An exact rational number.
@@ -34,8 +34,8 @@ impl NotNumber {
         match self {
             Self::Comma => "This table has decimal points: write a point, and no thousands marks.",
             Self::Point => "This table has decimal commas: write a comma, and no thousands marks.",
-            Self::Clock => "Write the duration as one number, e.g. 90 for 1:30.",
-            Self::Grouped => "Leave out the marks between thousands.",
+            Self::Clock => "Write a time as hours and minutes, 07:45, or as one number.",
+            Self::Grouped => "Put marks between thousands only, as in 1 234, or leave them out.",
             Self::Suffix => "Write the number alone, without its unit.",
             Self::TooLong => "Write at most 36 digits and powers of ten up to 36.",
             Self::Other => "Write a number, or leave the cell blank where there is no drive.",
@@ -43,14 +43,80 @@ impl NotNumber {
     }
 }
 
-/// Reads a decimal number (`12`, `-1.5`, `.5`, `2e3`) or a fraction (`1/3`), exactly.
+/// Reads a decimal number (`12`, `-1.5`, `.5`, `2e3`), also with marks between its thousands
+/// (`1'234.5`), a fraction (`1/3`), or a clock time, in minutes (`07:45`, `1:30:30`), exactly.
 pub(crate) fn parse(text: &str, decimal_comma: bool) -> Result<Number, NotNumber> {
     let (negative, body) = sign(text);
+    let point = if decimal_comma { b',' } else { b'.' };
     let magnitude = match body.split_once('/') {
         Some((above, below)) => fraction(above, below)?,
-        None => decimal(body, if decimal_comma { b',' } else { b'.' })?,
+        None => match decimal(body, point) {
+            Err(why @ NotNumber::Clock) => clock(body).ok_or(why)?,
+            Err(why @ (NotNumber::Grouped | NotNumber::Comma | NotNumber::Point)) => {
+                decimal(&ungrouped(body, char::from(point)).ok_or(why)?, b'.')?
+            }
+            plain => plain?,
+        },
     };
     Ok(if negative { -magnitude } else { magnitude })
+}
+
+/// How a text that reads as a number was read otherwise than as it stands.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Habit {
+    /// A clock time, in minutes.
+    Clock,
+    /// With marks between thousands.
+    Thousands,
+}
+
+/// Whether a text that reads as a number is one only by habit.
+pub(crate) fn habit(text: &str, decimal_comma: bool) -> Option<Habit> {
+    let plain = |byte: u8| byte.is_ascii_digit() || byte == b'-';
+    if text.bytes().all(plain) || text.contains('/') {
+        return None;
+    }
+    let point = if decimal_comma { b',' } else { b'.' };
+    match decimal(sign(text).1, point) {
+        Err(NotNumber::Clock) => Some(Habit::Clock),
+        Err(_) => Some(Habit::Thousands),
+        Ok(_) => None,
+    }
+}
+
+/// Hours and minutes, and perhaps seconds, in minutes.
+fn clock(body: &str) -> Option<Number> {
+    let parts: Vec<&str> = body.split(':').collect();
+    let two = |part: &str| whole(part).filter(|&n| part.len() == 2 && n < 60);
+    let (hours, rest) = parts.split_first()?;
+    let minutes = whole(hours).filter(|_| hours.len() < 4)? * 60 + two(rest.first()?)?;
+    match rest {
+        [_] => Some(Number::from(minutes)),
+        [_, seconds] => {
+            Some(RBig::from_parts(IBig::from(minutes * 60 + two(seconds)?), UBig::from(60_u8)))
+        }
+        _ => None,
+    }
+}
+
+/// A number without the marks between its thousands, with a decimal point. Where the mark is
+/// that of decimals it must stand twice.
+fn ungrouped(body: &str, point: char) -> Option<String> {
+    let mark = body.chars().find(|c| !c.is_ascii_digit())?;
+    let (whole, part) = match body.split_once(point) {
+        Some(split) if mark != point => split,
+        _ => (body, ""),
+    };
+    let mut groups = whole.split(mark);
+    let first = groups.next().filter(|first| (1..=3).contains(&first.len()))?;
+    let rest: Vec<&str> = groups.collect();
+    let three = |group: &&str| group.len() == 3 && group.bytes().all(|b| b.is_ascii_digit());
+    let marks = " '’\u{a0}\u{202f},.";
+    let fit = marks.contains(mark)
+        && rest.len() > usize::from(mark == point)
+        && rest.iter().all(three)
+        && part.bytes().all(|byte| byte.is_ascii_digit());
+    fit.then(|| format!("{first}{}.{part}", rest.concat()))
 }
 
 fn sign(text: &str) -> (bool, &str) {
@@ -134,15 +200,29 @@ fn reason(body: &str, point: u8) -> NotNumber {
         NotNumber::Clock
     } else if begins && only(" '’\u{a0}\u{202f},.") && !only(",.") {
         NotNumber::Grouped
-    } else if begins && only(",.") && body.contains(',') && point == b'.' {
+    } else if begins && only(",.") && (body.contains(',') || body.contains('.')) && point == b'.' {
         NotNumber::Comma
-    } else if begins && only(",.") && body.contains('.') && point == b',' {
+    } else if begins && only(",.") && (body.contains('.') || body.contains(',')) && point == b',' {
         NotNumber::Point
     } else if begins && body.contains(char::is_alphabetic) {
         NotNumber::Suffix
     } else {
         NotNumber::Other
     }
+}
+
+/// The sum of numbers; none where their fractions have too little in common to be worth adding.
+pub(crate) fn total<'n>(numbers: impl IntoIterator<Item = &'n Number>) -> Option<Number> {
+    const MOST_BITS: usize = 512;
+    numbers.into_iter().try_fold(RBig::ZERO, |sum, number| {
+        let sum = sum + number;
+        (sum.denominator().bit_len() <= MOST_BITS).then_some(sum)
+    })
+}
+
+/// That sum as text.
+pub(crate) fn total_text<'n>(numbers: impl IntoIterator<Item = &'n Number>) -> String {
+    total(numbers).map_or_else(|| "(a long fraction)".to_owned(), |sum| number_text(&sum))
 }
 
 /// A number as text that reads back as the same: a decimal where it ends, else a fraction.
@@ -193,16 +273,44 @@ mod tests {
     fn what_is_no_number_says_why() {
         assert_eq!(parse("1,5", false), Err(NotNumber::Comma));
         assert_eq!(parse("1.5", true), Err(NotNumber::Point));
-        assert_eq!(parse("1:30", false), Err(NotNumber::Clock));
+        assert_eq!(parse("1:75", false), Err(NotNumber::Clock));
         assert_eq!(parse("12min", false), Err(NotNumber::Suffix));
-        assert_eq!(parse("1'234.5", false), Err(NotNumber::Grouped));
-        assert_eq!(parse("1\u{a0}234", false), Err(NotNumber::Grouped));
+        assert_eq!(parse("1'23.5", false), Err(NotNumber::Grouped));
+        assert_eq!(parse("12\u{a0}34", false), Err(NotNumber::Grouped));
         for text in ["", ".", "-", "e5", "1e", "1/0", "1/", "--1", "Ash", "٣"] {
             assert_eq!(parse(text, false), Err(NotNumber::Other), "{text}");
         }
         assert_eq!(parse(&"9".repeat(37), false), Err(NotNumber::TooLong));
         assert_eq!(parse("1e99", false), Err(NotNumber::TooLong));
         assert_eq!(parse("1e99999999999", false), Err(NotNumber::TooLong));
+    }
+
+    /// Thousands were once refused with the advice to leave the marks out, and times with the
+    /// advice to write minutes.
+    #[test]
+    fn thousands_and_clock_times() {
+        let exact = Number::from_parts(2469.into(), 2_u8.into());
+        for (text, comma) in [
+            ("1 234,5", true),
+            ("1.234,5", true),
+            ("1,234.5", false),
+            ("1'234.5", false),
+            ("1\u{202f}234.5", false),
+            ("1234.5", false),
+        ] {
+            assert_eq!(parse(text, comma), Ok(exact.clone()), "{text}");
+        }
+        assert_eq!(parse("1.234.567", false), Ok(Number::from(1_234_567)));
+        assert_eq!(parse("-1,234", false), Ok(Number::from(-1234)));
+        assert_eq!(parse("1,234", true), Ok(Number::from_parts(617.into(), 500_u16.into())));
+        for text in ["1,23", "1234,567.8", "1,234,56", "1 234'567", ",234", "1,2345"] {
+            assert!(parse(text, false).is_err(), "{text}");
+        }
+        assert_eq!(parse("07:45", false), Ok(Number::from(465)));
+        assert_eq!(parse("1:30:30", true), Ok(Number::from_parts(181.into(), 2_u8.into())));
+        for text in ["7:5", "24:60", "1:2:3", ":30", "1:30:", "1:30:30:30", "1000:00"] {
+            assert!(parse(text, false).is_err(), "{text}");
+        }
     }
 
     #[test]

@@ -203,7 +203,10 @@ fn coordinate(
     sink: &mut Complaints,
 ) -> Option<Number> {
     match parse(&cell.text, style.decimal_comma) {
-        Ok(number) => Some(number),
+        Ok(number) => {
+            sink.met(cell, style.decimal_comma, &number);
+            Some(number)
+        }
         Err(_) if is_blank(&cell.text) => {
             let mend = "Every stop needs both coordinates.";
             sink.error(cell.span.clone(), "blank", "a coordinate is missing here", mend);

@@ -3,8 +3,9 @@
 use crate::complaint::{Complaint, Complaints, grouped};
 use crate::finish::finish;
 use crate::instance::{Instance, Reader};
+use crate::library::{self, Found};
 use crate::sniff::guess;
-use crate::{MAX_TEXT, arcs, blocks, matrix, points, table, tsplib};
+use crate::{MAX_TEXT, arcs, blocks, matrix, points, sums, table, tsplib};
 
 /// What was read.
 #[derive(Debug, Clone, PartialEq)]
@@ -17,12 +18,22 @@ pub struct Reading {
     pub complaints: Vec<Complaint>,
     /// The reader that was used: the one named, or the one guessed.
     pub reader: Reader,
+    /// A word for each instance of a file that holds several.
+    pub parts: Vec<String>,
+    /// Sums and ranges of the data, a sentence for each.
+    pub sums: Vec<String>,
 }
 
 /// Reads `text` with the reader named, or else with the one that the text looks made for.
 /// O(length) and, for the statements on a round trip, O(n³) up to 300 stops.
 #[must_use]
 pub fn read(text: &str, reader: Option<Reader>) -> Reading {
+    read_part(text, reader, None)
+}
+
+/// As [`read()`]; of a file that holds several instances, the one of that number, from 1.
+#[must_use]
+pub fn read_part(text: &str, reader: Option<Reader>, part: Option<usize>) -> Reading {
     if text.len() > MAX_TEXT {
         return too_long(text, reader.unwrap_or(Reader::Matrix));
     }
@@ -33,42 +44,77 @@ pub fn read(text: &str, reader: Option<Reader>) -> Reading {
         sink.error(at..at + c.len_utf8(), "binary", "this is no text but a binary file", mend);
         return refused(chosen, sink, Vec::new());
     }
-    let found = match chosen {
-        Reader::Matrix => matrix::read(text, &mut sink).map(|trip| finish(chosen, trip)),
-        Reader::Points => points::read(text, false, &mut sink).map(|trip| finish(chosen, trip)),
-        Reader::Geographic => points::read(text, true, &mut sink).map(|trip| finish(chosen, trip)),
-        Reader::Arcs => arcs::read(text, &mut sink),
-        Reader::Table => table::read(text, &mut sink),
-        Reader::Tsplib => tsplib::read(text, &mut sink).map(|trip| finish(chosen, trip)),
-        Reader::Blocks => blocks::read(text, &mut sink),
-    };
-    let guessed = reader
-        .is_none()
-        .then(|| format!("Taken for {}; name another reader if it is not.", taken_for(chosen)));
-    match found {
-        Some((instance, mut facts)) if sink.errors() == 0 => {
-            facts.extend(guessed);
-            let complaints = sink.finish();
-            Reading { instance: Some(instance), facts, complaints, reader: chosen }
-        }
-        _ => refused(chosen, sink, guessed.into_iter().collect()),
+    if let Some((span, message, mend)) = no_instance(text) {
+        sink.error(span, "no-instance", message, mend);
+        return refused(chosen, sink, Vec::new());
     }
+    let found = with(chosen, text, part, &mut sink);
+    let guessed = reader.is_none().then(|| {
+        format!(
+            "Taken for {} (`{}`); name another reader if it is not.",
+            chosen.taken_for(),
+            chosen.name()
+        )
+    });
+    match found {
+        Some(Found { instance, mut facts, parts }) if sink.errors() == 0 => {
+            facts.extend(sink.habits());
+            facts.extend(guessed);
+            let sums = sums::of(&instance);
+            sink.doubt_thousands();
+            let complaints = sink.finish();
+            Reading { instance: Some(instance), facts, complaints, reader: chosen, parts, sums }
+        }
+        _ => {
+            if sink.errors() == 0 {
+                let message = format!("this could not be read as {}", chosen.taken_for());
+                sink.error(0..0, "not-read", message, "Name another reader, or mend the text.");
+            }
+            refused(chosen, sink, guessed.into_iter().collect())
+        }
+    }
+}
+
+fn with<'a>(
+    reader: Reader,
+    text: &'a str,
+    part: Option<usize>,
+    sink: &mut Complaints<'a>,
+) -> Option<Found> {
+    let (instance, facts) = match reader {
+        Reader::Matrix => finish(reader, matrix::read(text, sink)?),
+        Reader::Points => finish(reader, points::read(text, false, sink)?),
+        Reader::Geographic => finish(reader, points::read(text, true, sink)?),
+        Reader::Arcs => arcs::read(text, sink)?,
+        Reader::Table => table::read(text, sink)?,
+        Reader::Tsplib => finish(reader, tsplib::read(text, sink)?),
+        Reader::Blocks => blocks::read(text, sink)?,
+        _ => return library::read(text, reader, part, sink),
+    };
+    Some(Found { instance, facts, parts: Vec::new() })
+}
+
+/// What a text is that is surely no instance.
+fn no_instance(text: &str) -> Option<(std::ops::Range<usize>, &'static str, &'static str)> {
+    let start = text.len() - text.trim_start().len();
+    let rest = &text[start..];
+    let length = rest.find(['\n', '\r']).unwrap_or(rest.len());
+    let json = (rest.starts_with('{') || rest.starts_with('[')) && rest.contains("\":")
+        || rest.starts_with('[') && rest[1..].trim_start().starts_with(['{', '[']);
+    if json {
+        let mend = "Paste its data as a table, or as `name by i, j` and rows below.";
+        return Some((start..start + length, "this is JSON, no table", mend));
+    }
+    let mend = "Paste the instance that it solves.";
+    rest.starts_with("Route #1:").then_some((
+        start..start + length,
+        "this is a solution, no instance",
+        mend,
+    ))
 }
 
 fn is_binary(c: char) -> bool {
     c.is_control() && !c.is_whitespace()
-}
-
-fn taken_for(reader: Reader) -> &'static str {
-    match reader {
-        Reader::Matrix => "a distance matrix (`matrix`)",
-        Reader::Points => "points in the plane (`points`)",
-        Reader::Geographic => "points by latitude and longitude (`points geographic`)",
-        Reader::Arcs => "a list of drives (`arcs`)",
-        Reader::Table => "tables with headings (`table`)",
-        Reader::Tsplib => "a TSPLIB file (`tsplib`)",
-        Reader::Blocks => "named blocks (`blocks`)",
-    }
 }
 
 fn refused(reader: Reader, sink: Complaints, mut facts: Vec<String>) -> Reading {
@@ -77,7 +123,14 @@ fn refused(reader: Reader, sink: Complaints, mut facts: Vec<String>) -> Reading 
         errors => format!("{} places", grouped(errors)),
     };
     facts.push(format!("{places} could not be read, so there is no instance yet."));
-    Reading { instance: None, facts, complaints: sink.finish(), reader }
+    Reading {
+        instance: None,
+        facts,
+        complaints: sink.finish(),
+        reader,
+        parts: Vec::new(),
+        sums: Vec::new(),
+    }
 }
 
 fn too_long(text: &str, reader: Reader) -> Reading {

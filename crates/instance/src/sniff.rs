@@ -8,12 +8,13 @@ use crate::instance::Reader;
 use crate::matrix::is_title;
 use crate::number::parse;
 use crate::text::{Line, lines};
-use crate::{arcs, points, table, tsplib};
+use crate::{arcs, library, points, table, tsplib};
 
 /// Lines looked at; the rest of a long text is much the same.
 const LOOKED_AT: usize = 400;
 
-/// Guesses the reader: TSPLIB by its keywords, blocks by their headings, points by a heading of
+/// Guesses the reader: TSPLIB by its keywords, files of other libraries by keywords or by counts
+/// that add up, blocks by their headings, points by a heading of
 /// coordinates, drives by their ends or by a line on directions, tables by headings that are no
 /// labels of rows, points by two numbers a row, else a matrix. O(length).
 pub(crate) fn guess(text: &str) -> Reader {
@@ -26,6 +27,9 @@ pub(crate) fn guess(text: &str) -> Reader {
         .collect();
     if found.iter().any(|line| tsplib::is_telling(line.text)) {
         return Reader::Tsplib;
+    }
+    if let Some(reader) = library::guess(text) {
+        return reader;
     }
     if found.iter().any(|line| is_by_heading(line.text) || is_equation(line.text)) {
         return Reader::Blocks;

@@ -18,10 +18,11 @@
 //! | [`Model`] | reading: columns, rows, families, subset families |
 //! | [`ModelBuilder`] | writing: notation's expansion and the readers |
 //! | [`Row`] | one exact row outside the model: a separated member of a family |
-//! | [`Statistics`] | size and coefficient ranges |
+//! | [`Statistics`] | size and coefficient ranges; [`Model::describe`] says them in words |
 //! | [`mps`] | models of others, and models for others |
 
 mod builder;
+mod describe;
 mod feasibility;
 mod id;
 mod labels;

@@ -265,7 +265,15 @@ impl<'i> Binder<'i> {
                 (None, None, Shape::Set(roots)) => {
                     Value::Set(Rc::new(Set::new(roots.len(), std::iter::empty())))
                 }
-                (None, None, _) => return fail(message::cell(&what(), symbol.span)),
+                (None, None, _) => {
+                    let named = self.key(symbol);
+                    let what = if named == symbol.name {
+                        what()
+                    } else {
+                        format!("{} (a cell of {named})", what())
+                    };
+                    return fail(message::cell(&what, symbol.span));
+                }
             };
             let value = self.shaped(symbol, value)?;
             let what = what();

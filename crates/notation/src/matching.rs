@@ -50,6 +50,8 @@ pub struct Match {
     pub taken: Option<String>,
     /// How it was found.
     pub found: Found,
+    /// Why it was assumed: "the only table over 1 index that is free"; empty otherwise.
+    pub reason: String,
     /// Everything that the instance holds, what fits first.
     pub offers: Vec<Offer>,
 }
@@ -76,7 +78,8 @@ pub fn matches(
 ) -> Vec<Match> {
     let symbols = &checked.plan.symbols;
     let lines: Vec<SymbolId> = (0..symbols.len()).filter(|&id| symbols[id].datum).collect();
-    let mut matcher = Matcher { text, symbols, instance, taken: BTreeMap::new() };
+    let mut matcher =
+        Matcher { text, symbols, instance, taken: BTreeMap::new(), reasons: BTreeMap::new() };
     for &id in &lines {
         let name = &symbols[id].name;
         if let Some(given) = names.get(name) {
@@ -121,6 +124,7 @@ struct Matcher<'m> {
     symbols: &'m [Symbol],
     instance: &'m Instance,
     taken: BTreeMap<SymbolId, (String, Found)>,
+    reasons: BTreeMap<SymbolId, String>,
 }
 
 impl Matcher<'_> {
@@ -138,12 +142,48 @@ impl Matcher<'_> {
         let wording = words(&format!("{} {}", symbol.name, meaning(self.text, symbol)));
         let suits = free.filter(|(_, datum)| fits(symbol, datum) && self.holds_labels(id, datum));
         let scored: Vec<(usize, &str)> =
-            suits.map(|(name, _)| (shared(&wording, &words(name)), name)).collect();
+            suits.map(|(name, _)| (shared(&wording, &words(name)).count(), name)).collect();
         let Some(best) = scored.iter().map(|(score, _)| *score).max() else { return };
         let mut leading = scored.iter().filter(|(score, _)| *score == best);
-        if let (Some((_, name)), None) = (leading.next(), leading.next()) {
-            self.taken.insert(id, ((*name).to_owned(), Found::Assumed));
+        if let (Some(&(_, name)), None) = (leading.next(), leading.next()) {
+            let reason = match scored.len() {
+                1 => self.only(id),
+                _ => {
+                    let theirs = words(name);
+                    let shared: Vec<&str> = shared(&wording, &theirs).map(String::as_str).collect();
+                    format!("of those that fit, it alone says \u{201c}{}\u{201d}", shared.join(" "))
+                }
+            };
+            self.reasons.insert(id, reason);
+            self.taken.insert(id, (name.to_owned(), Found::Assumed));
         }
+    }
+
+    /// Why the only datum that suits is that.
+    fn only(&self, id: SymbolId) -> String {
+        let symbol = &self.symbols[id];
+        let over = match symbol.indices.len() {
+            0 => String::new(),
+            1 => " over 1 index".to_owned(),
+            places => format!(" over {places} indices"),
+        };
+        let what = match &symbol.shape {
+            Shape::Set(_) => {
+                let indexed = self
+                    .taken
+                    .keys()
+                    .filter(|&&other| self.symbols[other].roots.contains(&Root::Set(id)));
+                let names: Vec<&str> = indexed.map(|&other| &*self.symbols[other].name).collect();
+                if names.is_empty() {
+                    return "the only set that fits".to_owned();
+                }
+                return format!("the only set that holds the labels of {}", names.join(", "));
+            }
+            _ if !symbol.indices.is_empty() => "table",
+            Shape::Number => "number",
+            Shape::Element(_) => "element",
+        };
+        format!("the only {what}{over} that is free")
     }
 
     /// Whether a set holds the labels of every table that is indexed by it.
@@ -184,6 +224,7 @@ impl Matcher<'_> {
             meaning: meaning(self.text, symbol),
             taken: taken.map(|(name, _)| name.clone()),
             found: taken.map_or(nothing, |(_, found)| *found),
+            reason: self.reasons.get(&id).cloned().unwrap_or_default(),
             offers,
         }
     }
@@ -224,9 +265,12 @@ fn words(text: &str) -> BTreeSet<String> {
     words.filter(|word| word.chars().count() > 2).collect()
 }
 
-/// How many words two texts share.
-fn shared(one: &BTreeSet<String>, other: &BTreeSet<String>) -> usize {
-    one.intersection(other).count()
+/// The words that two texts share.
+fn shared<'w>(
+    one: &'w BTreeSet<String>,
+    other: &'w BTreeSet<String>,
+) -> impl Iterator<Item = &'w String> {
+    one.intersection(other)
 }
 
 #[cfg(test)]
@@ -273,6 +317,7 @@ mod tests {
         );
         let lines = matched(SPLIT, &two, &[]);
         assert_eq!(lines[2].taken.as_deref(), Some("opening"), "{lines:?}");
+        assert_eq!(lines[2].reason, "of those that fit, it alone says \u{201c}opening\u{201d}");
         let lines = matched(SPLIT, &two.replace("opening", "permit"), &[]);
         assert_eq!((lines[2].taken.as_deref(), lines[2].found), (None, Found::Nothing));
         assert!(!lines[2].is_well());

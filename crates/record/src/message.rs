@@ -89,6 +89,8 @@ pub struct Binding {
     pub taken: Option<String>,
     /// How it was found.
     pub found: FoundBy,
+    /// Why it was taken, where it was assumed: "the only table that fits".
+    pub reason: String,
     /// What is wrong, with its place: "line 4 of A: …"; empty where it is well.
     pub problem: String,
     /// What the instance holds, what fits first.
@@ -250,6 +252,10 @@ pub struct InstanceReport {
     pub matrix: Vec<Option<f64>>,
     /// The unit of the values, where it is known ("minutes").
     pub unit: String,
+    /// A word for each instance of a file that holds several.
+    pub parts: Vec<String>,
+    /// Sums and ranges, or of a model sizes and coefficients, one sentence each.
+    pub statistics: Vec<String>,
 }
 
 /// A stop on the map.
@@ -407,6 +413,8 @@ pub struct RivalReport {
     pub families: Vec<FamilyReport>,
     /// Names of the columns in order, shown as `x[Ash → Birch]`.
     pub column_names: Vec<String>,
+    /// Sizes, ranges of coefficients, what is repeated or empty: one sentence each.
+    pub statistics: Vec<String>,
     /// Warnings of notation.
     pub complaints: Vec<Complaint>,
 }

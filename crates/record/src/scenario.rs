@@ -60,6 +60,16 @@ impl Default for Scenario {
     }
 }
 
+/// The name of a reader apart from the number of an instance behind it, from 1.
+#[must_use]
+pub fn reader_and_part(reader: &str) -> (&str, Option<usize>) {
+    let split = reader.rsplit_once(' ').and_then(|(name, part)| {
+        let part = part.parse().ok().filter(|&part: &usize| part > 0)?;
+        Some((name, Some(part)))
+    });
+    split.unwrap_or((reader, None))
+}
+
 impl Scenario {
     /// All instances in order.
     pub fn instances(&self) -> impl Iterator<Item = &InstanceText> {
@@ -85,7 +95,8 @@ pub fn letter(index: usize) -> String {
 /// An instance exactly as pasted.
 #[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
 pub struct InstanceText {
-    /// The reader's name; guessed when left out.
+    /// The reader's name, and behind it the number of the instance in a file that holds several
+    /// (`assignment 2`); guessed when left out.
     pub reader: Option<String>,
     /// A title of its own.
     pub title: String,

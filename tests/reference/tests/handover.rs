@@ -11,6 +11,7 @@ use std::collections::BTreeMap;
 use std::rc::Rc;
 
 use hullward_tests_reference::agree;
+use hullward_tests_reference::golden;
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::round_trip::{instance, rival};
 use model::{FamilyState, Model, mps};
@@ -190,4 +191,25 @@ fn every_written_out_rival_has_the_same_relaxation_and_optimum() {
         }
     }
     assert!(written >= 16, "{written} rivals were written");
+}
+
+/// Negative and infinite lower bounds, equations and maximisation stand among them.
+#[test]
+fn every_golden_model_keeps_its_relaxation_and_its_optimum() {
+    let all = golden::all();
+    assert_eq!(all.len(), 109);
+    for golden in all {
+        let text = mps::write(&golden.model).unwrap().text;
+        let (again, _) = mps::read(&text).unwrap();
+        assert_eq!(mps::write(&again).unwrap().text, text, "{}", golden.name);
+        let file = File::read(&by_file(&golden.name, &text));
+        for (whole, wanted) in [(false, golden.lp), (true, golden.mip)] {
+            let found = file.solve(whole);
+            assert!(
+                agree(found, wanted, 1e-6),
+                "{}, whole {whole}: {found} for {wanted}",
+                golden.name
+            );
+        }
+    }
 }

@@ -20,7 +20,7 @@ use record::scenario::{
 };
 
 /// The readers, as the scenario file names them, with a word for people.
-pub(crate) const READERS: [(&str, &str); 7] = [
+pub(crate) const READERS: [(&str, &str); 18] = [
     ("matrix", "distance table"),
     ("points", "points in the plane"),
     ("points geographic", "points by latitude, longitude"),
@@ -28,6 +28,17 @@ pub(crate) const READERS: [(&str, &str); 7] = [
     ("table", "tables of a spreadsheet"),
     ("tsplib", "TSPLIB file"),
     ("blocks", "named blocks"),
+    ("knapsack", "knapsack"),
+    ("multi-knapsack", "OR-Library mknap"),
+    ("assignment", "OR-Library gap"),
+    ("sites", "OR-Library cap"),
+    ("medians", "OR-Library pmed"),
+    ("tardiness", "OR-Library wt"),
+    ("job-shop", "job shop"),
+    ("quadratic", "QAPLIB file"),
+    ("graph", "DIMACS graph"),
+    ("steiner", "SteinLib file"),
+    ("routing", "routing: n K Q, q x y"),
 ];
 
 /// A title for an instance that has none.

@@ -22,7 +22,8 @@ pub(crate) fn Bindings(props: &InstanceProps) -> Html {
             hands.session.bind(BindJob { instance: (**text).clone(), rivals });
         }
     });
-    if document.bindings.iter().all(|line| line.found == FoundBy::Name) {
+    let plain = |line: &Binding| line.found == FoundBy::Name && line.problem.is_empty();
+    if document.bindings.iter().all(plain) {
         return Html::default();
     }
     let choose = |name: &str| {
@@ -38,7 +39,7 @@ pub(crate) fn Bindings(props: &InstanceProps) -> Html {
     html! {
         <div class="scroll" tabindex="0" role="region" aria-label="Data that the rivals take">
             <table class="bindings" data-testid="bindings">
-                <caption>{ "The rivals use other names than the instance." }</caption>
+                <caption>{ "What the rivals take from the instance." }</caption>
                 <thead><tr>
                     <th scope="col">{ "rivals' name" }</th>
                     <th scope="col">{ "takes" }</th>
@@ -90,9 +91,9 @@ fn said(line: &Binding) -> Html {
     }
     html! {
         <span class="soft">{ match line.found {
-            FoundBy::Shape => "assumed",
-            FoundBy::Person => "chosen",
-            FoundBy::Name | FoundBy::Nothing => "",
+            FoundBy::Shape => format!("assumed: {}", line.reason),
+            FoundBy::Person => "chosen".to_owned(),
+            FoundBy::Name | FoundBy::Nothing => String::new(),
         } }</span>
     }
 }

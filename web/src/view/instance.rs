@@ -8,10 +8,11 @@ use crate::state::pointer::Shared;
 use crate::view::bindings::Bindings;
 use crate::view::complaints::Complaints;
 use crate::view::grid::Grid;
-use crate::view::hands::use_hands;
+use crate::view::hands::{Hands, use_hands};
 use crate::view::instances::Instances;
 use crate::view::map::Map;
 use crate::view::paste::Paste;
+use crate::view::statistics::{parts, statistics};
 
 /// Rest after typing before the text is read, in milliseconds.
 const REST: u32 = 250;
@@ -25,6 +26,7 @@ pub(crate) struct InstanceProps {
 #[component]
 pub(crate) fn Instance(props: &InstanceProps) -> Html {
     let hands = use_hands();
+    let shown = hands.clone();
     let first = use_mut_ref(|| true);
     use_effect_with(props.document.draft.clone(), move |draft| {
         let rest = if std::mem::take(&mut *first.borrow_mut()) { 0 } else { REST };
@@ -46,7 +48,7 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
             <div class={classes!("instance-parts", (!is_drawn(document)).then_some("plain"))}>
                 if is_drawn(document) { <Drawing document={document.clone()} /> }
                 <div>
-                    { facts(document) }
+                    { facts(document, shown.as_ref()) }
                     if let Some(report) = &document.reading {
                         <Complaints text={document.draft.clone()} report={report.clone()} />
                     }
@@ -68,7 +70,7 @@ fn is_broken(document: &Document) -> bool {
 }
 
 /// What was understood; of the text in the box when it can be used, else of the last that could.
-fn facts(document: &Document) -> Html {
+fn facts(document: &Document, hands: Option<&Hands>) -> Html {
     let broken = is_broken(document);
     let report = if broken { document.reading.as_ref() } else { None };
     let report = report.or(document.accepted.as_ref().map(|accepted| &accepted.report));
@@ -82,6 +84,8 @@ fn facts(document: &Document) -> Html {
                     <li>{ fact.clone() }</li>
                 }
             </ul>
+            { parts(report, document.draft.reader.as_deref(), hands) }
+            { statistics(&report.statistics) }
             if broken && document.accepted.is_some() {
                 <p class="warn">
                     { "This text gives no instance yet. The drawing and the rivals are still those of the last one that did." }

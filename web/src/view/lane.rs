@@ -30,6 +30,7 @@ use crate::view::paint::Scene;
 use crate::view::reason::reason;
 use crate::view::ruler::Ruler;
 use crate::view::second::second;
+use crate::view::statistics::statistics;
 use crate::view::twin::Twin;
 
 /// Height of a tree in pixels.
@@ -72,6 +73,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 if let Some(rival) = &props.lane.rival {
                     <p class="small soft" data-testid="size" title={of(rival.nonzeros, "coefficient")}>{ size(rival) }</p>
                     <Families slot={props.slot.clone()} rival={rival.clone()} />
+                    { statistics(&rival.statistics) }
                 }
                 if props.relaxation {
                     <p class="small soft">{ "A relaxation: bounded, not compared for its optimum." }</p>

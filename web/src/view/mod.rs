@@ -36,6 +36,7 @@ pub(crate) mod rule;
 pub(crate) mod ruler;
 pub(crate) mod second;
 pub(crate) mod share;
+pub(crate) mod statistics;
 pub(crate) mod steering;
 pub(crate) mod twin;
 pub(crate) mod typeset;

@@ -1,7 +1,7 @@
 //! The box an instance is pasted or dropped into, the reader, and a button for a file.
 
 use gloo_file::callbacks::{FileReader, read_as_text};
-use record::scenario::InstanceText;
+use record::scenario::{InstanceText, reader_and_part};
 use web_sys::{File, HtmlInputElement, HtmlSelectElement, HtmlTextAreaElement};
 use yew::prelude::*;
 
@@ -64,7 +64,7 @@ pub(crate) fn Paste(props: &PasteProps) -> Html {
             ondragleave={Callback::from(move |_: DragEvent| leave.set(false))}
         >
             <label for={BOX}>
-                { "Paste a distance table, points, a list of drives, a TSPLIB file, a scenario, or a model in MPS as a rival; or drop a file here." }
+                { "Paste a distance table, points, a list of drives, tables of a spreadsheet, a file of a public library, a scenario, or a model in MPS as a rival; or drop a file here." }
             </label>
             <TextBox draft={props.draft.clone()} broken={props.broken} />
             <div class="row">
@@ -120,7 +120,7 @@ fn ReaderChoice(props: &ReaderProps) -> Html {
             hands.document.dispatch(DocumentAction::Reader(reader));
         }
     });
-    let chosen = props.reader.as_deref().unwrap_or("");
+    let chosen = reader_and_part(props.reader.as_deref().unwrap_or("")).0;
     html! {
         <label class="field">
             { "Read as" }

@@ -10,6 +10,8 @@ pub(crate) fn instance_report(text: &str, reading: &Reading) -> InstanceReport {
     let mut report = InstanceReport {
         reader: reading.reader.name().to_owned(),
         facts: reading.facts.clone(),
+        parts: reading.parts.clone(),
+        statistics: reading.sums.clone(),
         complaints: reading.complaints.iter().map(|found| of_instance(text, found)).collect(),
         ..InstanceReport::default()
     };

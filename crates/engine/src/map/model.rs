@@ -24,6 +24,7 @@ pub(crate) fn rival_report(
         nonzeros: statistics.nonzeros,
         families: family_reports(model, separators, statistics.families),
         column_names: columns.map(|column| model.column_name(column)).collect(),
+        statistics: model.describe(),
         complaints,
     }
 }

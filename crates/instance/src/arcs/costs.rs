@@ -158,7 +158,10 @@ fn most_common_width(rows: &[Row]) -> usize {
 /// A cost; complains where there is none.
 pub(super) fn cost(cell: &Cell, style: Style, sink: &mut Complaints) -> Option<Number> {
     match parse(&cell.text, style.decimal_comma) {
-        Ok(number) => Some(number),
+        Ok(number) => {
+            sink.met(cell, style.decimal_comma, &number);
+            Some(number)
+        }
         Err(_) if is_blank(&cell.text) => {
             let mend = "Every drive needs its cost; leave out a line that is no drive.";
             sink.error(cell.span.clone(), "blank", "a cost is missing here", mend);

@@ -99,9 +99,6 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
         .iter()
         .map(|row| row.cells.iter().map(|cell| value(cell, style, sink)).collect())
         .collect();
-    if style.decimal_comma {
-        doubt_thousands(&rows, sink);
-    }
     let shape = shape::find(&values, headings.columns.as_ref().map(Vec::len));
     let (square, mirrored) = place::square(&rows, values, &shape, &headings, sink)?;
     let mut notes = Vec::new();
@@ -151,7 +148,10 @@ fn value(cell: &Cell, style: Style, sink: &mut Complaints) -> Value {
         return Value::Blank;
     }
     match parse(&cell.text, style.decimal_comma) {
-        Ok(number) => Value::Number(number),
+        Ok(number) => {
+            sink.met(cell, style.decimal_comma, &number);
+            Value::Number(number)
+        }
         Err(_) if sink.is_full() => {
             sink.count_error();
             Value::Broken
@@ -163,24 +163,6 @@ fn value(cell: &Cell, style: Style, sink: &mut Complaints) -> Value {
             sink.error(cell.span.clone(), "not-a-number", message, mend);
             Value::Broken
         }
-    }
-}
-
-/// Warns when every decimal comma might be a thousands mark.
-fn doubt_thousands(rows: &[Row], sink: &mut Complaints) {
-    let mut first = None;
-    for cell in rows.iter().flat_map(|row| &row.cells) {
-        let Some((whole, part)) = cell.text.split_once(',') else { continue };
-        let grouped = part.len() == 3 && !whole.trim_start_matches('-').starts_with('0');
-        if !grouped {
-            return;
-        }
-        first = first.or(Some(cell));
-    }
-    if let Some(cell) = first {
-        let message = format!("the comma in `{}` was read as a decimal comma", cell.text);
-        let mend = "If it marks thousands, leave it out.";
-        sink.warn(cell.span.clone(), "perhaps-thousands", message, mend);
     }
 }
 

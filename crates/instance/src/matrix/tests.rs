@@ -173,7 +173,7 @@ fn blanks_are_missing_drives() {
 
 #[test]
 fn all_complaints_are_shown_with_exact_places() {
-    let text = "min;Ash;Birch;Cedar;Dell\nAsh;0;5;7O;1\nBirch;4;0;3\nCedar;8;2;0;1;9\nDale;1:30;1;12 min;0\n";
+    let text = "min;Ash;Birch;Cedar;Dell\nAsh;0;5;7O;1\nBirch;4;0;3\nCedar;8;2;0;1;9\nDale;1:75;1;12 min;0\n";
     let reading = matrix(text);
     assert!(reading.instance.is_none());
     assert_eq!(
@@ -188,9 +188,12 @@ fn all_complaints_are_shown_with_exact_places() {
         ]
     );
     let spans: Vec<_> = reading.complaints.iter().map(|c| &text[c.span.clone()]).collect();
-    assert_eq!(spans, ["7O", "", "9", "Dale", "1:30", "12 min"]);
+    assert_eq!(spans, ["7O", "", "9", "Dale", "1:75", "12 min"]);
     assert_eq!(reading.complaints[1].message, "row 2 has 3 values, where 4 are expected");
-    assert_eq!(reading.complaints[4].mend, "Write the duration as one number, e.g. 90 for 1:30.");
+    assert_eq!(
+        reading.complaints[4].mend,
+        "Write a time as hours and minutes, 07:45, or as one number."
+    );
     assert_eq!(
         reading.facts.last().unwrap(),
         "6 places could not be read, so there is no instance yet."

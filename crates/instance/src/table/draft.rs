@@ -3,11 +3,11 @@
 use std::collections::{BTreeMap, BTreeSet};
 use std::ops::Range;
 
-use crate::cells::{Cell, Style, is_blank};
+use crate::cells::{self, Cell, Style, is_blank};
 use crate::complaint::{Complaints, excerpt, grouped, plural};
 use crate::instance::{Datum, Instance};
 use crate::names::Name;
-use crate::number::{Number, parse};
+use crate::number::Number;
 
 use super::MAX_TABLES;
 
@@ -156,23 +156,12 @@ pub(super) fn whole(text: &str) -> Option<i64> {
 
 /// A number; complains of what is none. Blank cells are the caller's.
 pub(super) fn number(cell: &Cell, style: Style, sink: &mut Complaints) -> Option<Number> {
-    match parse(&cell.text, style.decimal_comma) {
-        Ok(number) => Some(number),
-        Err(_) if sink.is_full() => {
-            sink.count_error();
-            None
-        }
-        Err(_) if is_blank(&cell.text) => {
-            let mend = "Write the number, or take the line out.";
-            sink.error(cell.span.clone(), "blank", "a number is missing here", mend);
-            None
-        }
-        Err(why) => {
-            let message = format!("`{}` is not a number", excerpt(&cell.text));
-            sink.error(cell.span.clone(), "not-a-number", message, why.mend());
-            None
-        }
+    if is_blank(&cell.text) && !sink.is_full() {
+        let mend = "Write the number, or take the line out.";
+        sink.error(cell.span.clone(), "blank", "a number is missing here", mend);
+        return None;
     }
+    cells::number(cell, style.decimal_comma, sink)
 }
 
 /// What is said of a table over `sets`.
@@ -185,11 +174,13 @@ pub(super) fn said(name: &str, datum: &Datum, sets: &str) -> String {
 pub(super) struct Cells {
     pub(super) cells: BTreeMap<Vec<String>, Number>,
     pub(super) blank: usize,
+    /// How many are clock times.
+    clocks: usize,
 }
 
 impl Cells {
     pub(super) fn new() -> Self {
-        Self { cells: BTreeMap::new(), blank: 0 }
+        Self { cells: BTreeMap::new(), blank: 0, clocks: 0 }
     }
 
     /// Puts a cell in its place; a blank one is counted.
@@ -204,15 +195,31 @@ impl Cells {
             self.blank += 1;
         } else if let Some(number) = number(cell, style, sink) {
             self.cells.insert(key, number);
+            self.clocks += usize::from(cell.text.contains(':'));
         }
     }
 
-    /// The table, and what is said of its blanks.
-    pub(super) fn finish(self, name: &str, arity: usize) -> (Datum, Option<String>) {
-        let blank = (self.blank > 0).then(|| {
+    /// The table, and what is said of its blanks and of clock times below a unit.
+    pub(super) fn finish(mut self, name: &str, arity: usize, draft: &mut Draft) -> Datum {
+        if self.blank > 0 {
             let cells = plural(self.blank, "cell", "cells");
-            format!("{cells} of {name} left blank: no number there.")
-        });
-        (Datum::Table { arity, cells: self.cells }, blank)
+            draft.note(format!("{cells} of {name} left blank: no number there."));
+        }
+        let unit = draft.units.get(name).map_or("", String::as_str);
+        let minutes = match unit.to_lowercase().as_str() {
+            "h" | "hour" | "hours" | "hrs" => Number::from(60),
+            "s" | "sec" | "second" | "seconds" => Number::ONE / Number::from(60),
+            _ => Number::ONE,
+        };
+        if self.clocks > 0 && !minutes.is_one() {
+            let said = if self.clocks == self.cells.len() {
+                self.cells.values_mut().for_each(|value| *value = &*value / &minutes);
+                format!("The clock times of {name} were turned into {unit}.")
+            } else {
+                format!("{name} mixes clock times, in minutes, with numbers, in {unit}.")
+            };
+            draft.note(said);
+        }
+        Datum::Table { arity, cells: self.cells }
     }
 }

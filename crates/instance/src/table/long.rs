@@ -67,11 +67,8 @@ pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) 
                 cells.put(key.clone(), &row.cells[place], section.style, sink);
             }
         }
-        let (datum, blank) = cells.finish(&name, indices.len());
+        let datum = cells.finish(&name, indices.len(), draft);
         draft.note(said(&name, &datum, &names.join(", ")));
-        if let Some(blank) = blank {
-            draft.note(blank);
-        }
         draft.datum(&name, heading, datum, sink);
     }
 }

@@ -190,7 +190,7 @@ fn broken_cells_are_all_named() {
             (6, 1, "tuple-twice"),
         ]
     );
-    let wide = table("client\\depot;P;Q\nAsh;1;2;3\nBirch;x1;2\n;4;5\nAsh;1:30\n");
+    let wide = table("client\\depot;P;Q\nAsh;1;2;3\nBirch;x1;2\n;4;5\nAsh;1:75\n");
     assert_eq!(
         places(&wide),
         [(2, 9, "row-length"), (4, 1, "label-missing"), (5, 9, "row-length")]
@@ -302,4 +302,29 @@ fn check(text: &str, reader: Option<Reader>) -> Result<(), TestCaseError> {
         prop_assert_eq!(crate::layout(&instance).places.len(), instance.matrix().len().isqrt());
     }
     Ok(())
+}
+
+/// Arrival times and thousands as a spreadsheet shows them.
+#[test]
+fn clock_times_and_thousands_are_read_and_said() {
+    let text = "stop\tarrival\tservice (h)\tfee (EUR)\nAsh\t07:45\t0:30\t1 234,50\nBirch\t8:05\t1:15\t12,00\n";
+    let reading = read(text, None);
+    assert_eq!(reading.complaints, [], "{reading:?}");
+    let instance = reading.instance.as_ref().unwrap();
+    assert_eq!(
+        shown(instance)[1..],
+        [
+            "arrival = Ash:465 Birch:485",
+            "service = Ash:0.5 Birch:1.25",
+            "fee = Ash:1234.5 Birch:12"
+        ]
+    );
+    for said in [
+        "Clock times count in minutes: `07:45` is 465.",
+        "Marks between thousands were read: `1 234,50` is 1234.5.",
+        "The clock times of service were turned into h.",
+    ] {
+        assert!(reading.facts.iter().any(|fact| fact == said), "{said}: {:?}", reading.facts);
+    }
+    assert_eq!(instance.units["fee"], "EUR");
 }

@@ -109,11 +109,8 @@ pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) 
             cells.put(vec![label.clone(), column.clone()], cell, section.style, sink);
         }
     }
-    let (datum, blank) = cells.finish(&name, 2);
+    let datum = cells.finish(&name, 2, draft);
     draft.note(said(&name, &datum, &format!("{}, {}", sets.0, sets.1)));
-    if let Some(blank) = blank {
-        draft.note(blank);
-    }
     draft.datum(&name, &head.cells[0], datum, sink);
 }
 

@@ -1,8 +1,7 @@
 //! The layouts of EDGE_WEIGHT_SECTION. Numbers run on over lines; the diagonal is not looked at.
 
-use crate::cells::{Cell, Separator, split};
-use crate::complaint::{Complaints, excerpt, grouped};
-use crate::number::parse;
+use crate::cells::{Cell, Separator, number, split};
+use crate::complaint::{Complaints, grouped};
 use crate::square::Square;
 use crate::text::Line;
 
@@ -81,7 +80,7 @@ pub(crate) fn square(
     for i in 0..n {
         for j in format.columns(i, n) {
             let Some(cell) = listed.next() else { continue };
-            let Some(value) = number(cell, sink) else { continue };
+            let Some(value) = number(cell, false, sink) else { continue };
             if format != Format::Full {
                 square.put(j, i, Some(value.clone()));
             }
@@ -89,19 +88,4 @@ pub(crate) fn square(
         }
     }
     (sink.errors() == before).then_some(square)
-}
-
-fn number(cell: &Cell, sink: &mut Complaints) -> Option<crate::Number> {
-    match parse(&cell.text, false) {
-        Ok(number) => Some(number),
-        Err(_) if sink.is_full() => {
-            sink.count_error();
-            None
-        }
-        Err(why) => {
-            let message = format!("`{}` is not a number", excerpt(&cell.text));
-            sink.error(cell.span.clone(), "not-a-number", message, why.mend());
-            None
-        }
-    }
 }

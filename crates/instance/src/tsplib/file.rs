@@ -15,7 +15,7 @@ const SECTIONS: [&str; 9] = [
     "CLUSTER_SECTION",
 ];
 
-const KEYWORDS: [&str; 9] = [
+const KEYWORDS: [&str; 11] = [
     "NAME",
     "TYPE",
     "COMMENT",
@@ -25,6 +25,8 @@ const KEYWORDS: [&str; 9] = [
     "NODE_COORD_TYPE",
     "DISPLAY_DATA_TYPE",
     "EDGE_DATA_FORMAT",
+    "CAPACITY",
+    "VEHICLES",
 ];
 
 /// Whether a line is of a kind that only TSPLIB files have.

@@ -1,8 +1,9 @@
-//! TSPLIB files of type TSP and ATSP (Reinelt, ORSA Journal on Computing 3, 1991, 376-384).
+//! TSPLIB files of type TSP, ATSP and CVRP (Reinelt, ORSA Journal on Computing 3, 1991, 376-384).
 
 mod distance;
 mod explicit;
 mod file;
+mod routing;
 #[cfg(test)]
 mod tests;
 
@@ -17,7 +18,7 @@ use crate::number::parse;
 use crate::square::{Square, counted};
 use crate::text::Line;
 
-use distance::Rule;
+pub(crate) use distance::Rule;
 use explicit::Format;
 use file::File;
 
@@ -26,7 +27,7 @@ pub(crate) use file::is_telling;
 /// Reads a TSPLIB file. O(n²).
 pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
     let file = File::scan(text, sink);
-    check_type(&file, sink);
+    check_type(&file, sink)?;
     let n = dimension(&file, sink);
     let (rule, rule_line) = weight_rule(&file, sink)?;
     let n = n?;
@@ -48,13 +49,18 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
     };
     let geographic = rule == Some(Rule::Geo);
     let points = points(coordinates.flatten(), display.flatten(), geographic);
+    let mut notes = Vec::new();
+    let tables = match file.value("TYPE") {
+        Some("CVRP") => routing::tables(&file, &square.labels, &mut notes, sink)?,
+        _ => Vec::new(),
+    };
     Some(RoundTrip {
         title: file.value("NAME").map(excerpt).unwrap_or_default(),
         unit: String::new(),
         square,
         points,
-        tables: Vec::new(),
-        notes: Vec::new(),
+        tables,
+        notes,
         how: format!("a TSPLIB file, distances by {how}"),
     })
 }
@@ -70,12 +76,19 @@ fn points(nodes: Option<Nodes>, display: Option<Nodes>, geographic: bool) -> Opt
     Some(Points { places, geographic })
 }
 
-fn check_type(file: &File, sink: &mut Complaints) {
-    let Some((value, line)) = file.keyword("TYPE") else { return };
-    if !["TSP", "ATSP"].contains(&value) {
-        let message = format!("files of type `{}` are not read", excerpt(value));
-        sink.error(line.span(), "type", message, "Types that are read: TSP and ATSP.");
+/// None where the file is no instance at all.
+fn check_type(file: &File, sink: &mut Complaints) -> Option<()> {
+    let Some((value, line)) = file.keyword("TYPE") else { return Some(()) };
+    if value == "TOUR" {
+        let mend = "Paste the instance that it is a tour of.";
+        sink.error(line.span(), "type", "this is a tour, no instance", mend);
+        return None;
     }
+    if !["TSP", "ATSP", "CVRP"].contains(&value) {
+        let message = format!("files of type `{}` are not read", excerpt(value));
+        sink.error(line.span(), "type", message, "Types that are read: TSP, ATSP and CVRP.");
+    }
+    Some(())
 }
 
 fn dimension(file: &File, sink: &mut Complaints) -> Option<usize> {

@@ -2,7 +2,7 @@
 
 use super::distance::Rule;
 use crate::number::Number;
-use crate::{Instance, Reader, Reading, read};
+use crate::{Datum, Instance, Reader, Reading, read};
 
 /// d(1,2) = 1, d(1,3) = 2, d(1,4) = 3, d(2,3) = 4, d(2,4) = 5, d(3,4) = 6.
 const LAYOUTS: [(&str, &str); 9] = [
@@ -114,7 +114,8 @@ fn geographic_places_are_longitude_and_latitude() {
 
 #[test]
 fn what_is_not_read_is_named_with_its_line() {
-    let text = "NAME: x\nTYPE: CVRP\nCAPACITY: 5\nfoo\nDIMENSION: two\nEDGE_WEIGHT_TYPE: MAN_9D\n";
+    let text =
+        "NAME: x\nTYPE: HCP\nSERVICE_TIME: 5\nfoo\nDIMENSION: two\nEDGE_WEIGHT_TYPE: MAN_9D\n";
     let reading = read(text, None);
     assert!(reading.instance.is_none());
     let found: Vec<_> = reading.complaints.iter().map(|c| (c.line, c.code)).collect();
@@ -160,4 +161,40 @@ fn missing_parts_are_named() {
         assert!(reading.instance.is_none());
         assert_eq!(reading.complaints[0].code, code, "{text}");
     }
+}
+
+/// Four stops of which the third is the depot, distances by hand.
+const ROUTES: &str = "NAME: four-k2\nTYPE: CVRP\nDIMENSION: 4\nCAPACITY: 10\n\
+    EDGE_WEIGHT_TYPE: EXPLICIT\nEDGE_WEIGHT_FORMAT: LOWER_ROW\nEDGE_WEIGHT_SECTION\n1\n2 3\n4 5 6\n\
+    DEMAND_SECTION\n1 4\n2 5\n3 0\n4 6\nDEPOT_SECTION\n3\n-1\nEOF\n";
+
+#[test]
+fn routes_have_demands_capacity_depot_and_vehicles() {
+    let reading = read(ROUTES, None);
+    assert_eq!(reading.complaints, []);
+    let instance = reading.instance.unwrap();
+    assert_eq!(instance.get("r"), Some(&Datum::Element("3".to_owned())));
+    assert!(!instance.assumed.contains("r") && instance.assumed.contains("A"));
+    assert_eq!(instance.get("Q"), Some(&Datum::Number(10.into())));
+    assert_eq!(instance.get("K"), Some(&Datum::Number(2.into())));
+    let Some(Datum::Table { cells, .. }) = instance.get("q") else { panic!("no demands") };
+    assert_eq!(cells[&vec!["4".to_owned()]], 6.into());
+    assert!(reading.facts.contains(&"Capacity 10 a vehicle, for a demand of 15.".to_owned()));
+}
+
+#[test]
+fn what_routes_lack_is_named() {
+    for (from, to, code, line) in [
+        ("CAPACITY: 10\n", "", "keyword-missing", 1),
+        ("CAPACITY: 10", "CAPACITY: ten", "keyword-missing", 4),
+        ("4 6\nDEPOT", "DEPOT", "row-count", 14),
+        ("2 5\n", "9 5\n", "row-length", 13),
+        ("\n3\n-1", "\n7\n-1", "depot", 17),
+    ] {
+        let reading = read(&ROUTES.replacen(from, to, 1), None);
+        let found = &reading.complaints[0];
+        assert_eq!((found.code, found.line), (code, line), "{from} -> {to}");
+    }
+    let tour = read("NAME: x\nTYPE: TOUR\nDIMENSION: 3\nTOUR_SECTION\n1\n2\n3\n-1\n", None);
+    assert_eq!(tour.complaints[0].message, "this is a tour, no instance");
 }

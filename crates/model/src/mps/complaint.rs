@@ -104,8 +104,8 @@ fn count(value: usize) -> u32 {
     u32::try_from(value).unwrap_or(u32::MAX)
 }
 
-/// "1 row", "4,896 rows".
-pub(super) fn plural(value: usize, one: &str, many: &str) -> String {
+/// A count with its thousands separated.
+pub(crate) fn grouped(value: usize) -> String {
     let digits = value.to_string();
     let mut grouped = String::new();
     for (place, digit) in digits.chars().enumerate() {
@@ -114,11 +114,16 @@ pub(super) fn plural(value: usize, one: &str, many: &str) -> String {
         }
         grouped.push(digit);
     }
-    format!("{grouped} {}", if value == 1 { one } else { many })
+    grouped
+}
+
+/// "1 row", "4,896 rows".
+pub(crate) fn plural(value: usize, one: &str, many: &str) -> String {
+    format!("{} {}", grouped(value), if value == 1 { one } else { many })
 }
 
 /// A piece of the text to quote: at most 40 characters, control characters as blanks.
-pub(super) fn excerpt(text: &str) -> String {
+pub(crate) fn excerpt(text: &str) -> String {
     let mut out: String =
         text.chars().take(40).map(|c| if c.is_control() { ' ' } else { c }).collect();
     if text.chars().nth(40).is_some() {

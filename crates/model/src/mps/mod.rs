@@ -46,5 +46,6 @@ mod trap;
 mod write;
 
 pub use complaint::{Complaint, Severity};
+pub(crate) use complaint::{excerpt, grouped, plural};
 pub use read::{MOST_BYTES, MOST_ENTRIES, read};
 pub use write::{WriteError, Written, write};

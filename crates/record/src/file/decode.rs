@@ -10,7 +10,7 @@ use super::fields::{Findings, Table};
 use crate::place::Finding;
 use crate::scenario::{
     Act, ActKind, BranchingRule, FamilyState, InstanceText, MOST_ACTS, MOST_INSTANCES, MOST_RIVALS,
-    Rival, Role, Run, Scenario, Selection, Study,
+    Rival, Role, Run, Scenario, Selection, Study, reader_and_part,
 };
 
 const SCENARIO: [&str; 10] =
@@ -55,7 +55,7 @@ const STUDIES: [(&str, ()); 10] = [
 ];
 
 /// The words for the readers of instances.
-const READERS: [(&str, ()); 8] = [
+const READERS: [(&str, ()); 19] = [
     ("matrix", ()),
     ("points", ()),
     ("points geographic", ()),
@@ -64,6 +64,17 @@ const READERS: [(&str, ()); 8] = [
     ("tsplib", ()),
     ("mps", ()),
     ("blocks", ()),
+    ("knapsack", ()),
+    ("multi-knapsack", ()),
+    ("assignment", ()),
+    ("sites", ()),
+    ("medians", ()),
+    ("tardiness", ()),
+    ("job-shop", ()),
+    ("quadratic", ()),
+    ("graph", ()),
+    ("steiner", ()),
+    ("routing", ()),
 ];
 
 /// The words for where the rows of a family stand.
@@ -202,7 +213,10 @@ impl Decoder<'_> {
     fn instance(&mut self, table: &Table<'_>, span: Range<usize>) -> InstanceText {
         let found = &mut self.findings;
         found.unknown_keys(table, "an instance", &INSTANCE);
-        found.choice(table, "reader", &READERS);
+        if let Some(reader) = found.text(table, "reader") {
+            let span = table.get("reader").map(Spanned::span).unwrap_or_default();
+            found.word(reader_and_part(&reader).0, span, "reader", &READERS);
+        }
         let text = found.text(table, "text");
         if text.is_none() && !table.contains_key("text") {
             let message = "the instance has no text".to_owned();

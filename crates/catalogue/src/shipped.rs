@@ -29,10 +29,35 @@ macro_rules! family {
 pub(crate) const FAMILIES: &[Family] = &[
     family!(
         "atsp": "assignment", "labels", "lifted-labels", "one-commodity", "two-commodity",
-        "multi-commodity", "subtours", "cuts"
+        "multi-commodity", "subtours", "cuts", "tight-one-commodity", "time-staged", "legs",
+        "precedence-labels", "precedence", "rlt-labels"
     ),
-    family!("tsp": "subtours"),
+    family!("tsp": "subtours", "degrees", "two-commodity"),
     family!("path": "flow", "potentials"),
     family!("ufl": "joined", "split"),
     family!("lot": "big-m", "l-s", "location-form", "shortest-path-form"),
+    family!("limited-path": "flow", "layers"),
+    family!(
+        "cvrp": "load-labels", "lifted-load-labels", "load-flow", "tight-load-flow",
+        "fractional-cuts", "capacity-cuts"
+    ),
+    family!("cfl": "joined", "total", "split"),
+    family!("p-median": "joined", "split", "radius"),
+    family!("p-centre": "assignment", "radius"),
+    family!(
+        "tree": "labels", "one-commodity", "cuts", "subtours", "directed-cuts",
+        "multi-commodity"
+    ),
+    family!(
+        "steiner": "one-commodity", "cuts", "undirected-flow", "directed-cuts",
+        "multi-commodity", "balanced-cuts"
+    ),
+    family!("design": "joined", "split"),
+    family!("matching": "degree", "odd-sets"),
+    family!("stable-set": "stars", "edges", "cliques"),
+    family!("colouring": "assignment", "ordered", "cliques", "representatives"),
+    family!("ordering": "labels", "dicycles"),
+    family!("max-cut": "sides", "triangles"),
+    family!("grouping": "triangles", "assignment", "representatives"),
+    family!("hub": "paths", "flow"),
 ];

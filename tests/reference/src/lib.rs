@@ -12,6 +12,7 @@ pub mod independent;
 pub mod kernel;
 pub mod random_lp;
 pub mod round_trip;
+pub mod seeded;
 pub mod theory;
 
 use std::path::PathBuf;

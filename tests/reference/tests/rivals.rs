@@ -1,16 +1,15 @@
 //! What theory says of the rivals for shortest paths, facility location, lot sizing and the
-//! undirected round trip, on seeded instances and on published ones. Sources: the citations in
+//! undirected round trip, on seeded instances and on published ones; and that the rivals of
+//! every family have one optimum. Sources: the citations in
 //! the catalogue's `family.toml`, and those named at the values.
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 
-use std::collections::BTreeMap;
-
-use catalogue::{Class, Level, Order, generate, relations};
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::round_trip::{
     formulation, instance, rival, root, solve, tsplib, values,
 };
+use hullward_tests_reference::seeded::{extent, families, seeded};
 use hullward_tests_reference::theory::{
     cheapest_lots, cheapest_sites, shortest_path, sites_of_or_library,
 };
@@ -37,60 +36,18 @@ fn optimum(id: &str, instance: &Instance) -> f64 {
     summary.incumbent.unwrap()
 }
 
-/// Seeded instances of a family in every class that it has.
-fn seeded(family: &str, sizes: &[u32], seeds: u64) -> Vec<(String, Instance)> {
-    let mut out = Vec::new();
-    for &size in sizes {
-        for class in Class::ALL {
-            for seed in 1..=seeds {
-                if let Some(text) = generate(family, size, class, seed) {
-                    out.push((
-                        format!("{family}, {class:?}, {size}, seed {seed}"),
-                        instance(&text),
-                    ));
-                }
-            }
-        }
-    }
-    assert!(!out.is_empty(), "{family} has no generator");
-    out
-}
-
-#[test]
-fn published_relations_hold_in_every_family() {
-    for (family, at_least) in [("tsp", 1), ("path", 1), ("ufl", 1), ("lot", 3)] {
-        let relations = relations(family);
-        assert!(relations.len() >= at_least, "{family}");
-        for (name, instance) in seeded(family, &[4, 6, 9], 5) {
-            let mut known = BTreeMap::new();
-            let mut value =
-                |id: &String| *known.entry(id.clone()).or_insert_with(|| bound(id, &instance));
-            for relation in relations.iter().filter(|r| r.level == Level::Theorem) {
-                let (left, right) = (value(&relation.left), value(&relation.right));
-                let margin = 1e-7 * (1.0 + right.abs());
-                let holds = match relation.order {
-                    Order::NeverWeaker => left >= right - margin,
-                    Order::Equal => (left - right).abs() <= margin,
-                    Order::Incomparable => true,
-                };
-                assert!(holds, "{relation:?} on {name}: {left}, {right}");
-            }
-        }
-    }
-}
-
 #[test]
 fn written_out_rivals_agree_with_highs() {
-    let families: [(&str, &[&str]); 4] = [
-        ("atsp", &["atsp/two-commodity"]),
-        ("path", &["path/flow", "path/potentials"]),
-        ("ufl", &["ufl/joined", "ufl/split"]),
-        ("lot", &["lot/big-m", "lot/location-form", "lot/shortest-path-form"]),
-    ];
-    for (family, ids) in families {
-        for (name, instance) in seeded(family, &[4, 7], 2) {
-            for id in ids {
-                let model = rival(id, &instance);
+    let mut compared = 0;
+    for family in families() {
+        let extent = extent(&family);
+        for (name, instance) in seeded(&family, &extent.optima[..1], 2) {
+            for entry in catalogue::entries().into_iter().filter(|entry| entry.family == family) {
+                let (id, model) = (&entry.id, rival(&entry.id, &instance));
+                if !model.subset_families().is_empty() {
+                    continue;
+                }
+                compared += 1;
                 let pairs = [
                     (bound(id, &instance), highs(&model, &[], false)),
                     (optimum(id, &instance), highs(&model, &[], true)),
@@ -99,6 +56,30 @@ fn written_out_rivals_agree_with_highs() {
                     let Verdict::Optimal(value) = verdict else { panic!("{id}: {verdict:?}") };
                     assert!(agree(found, value, 1e-6), "{id} on {name}: {found}, {value}");
                 }
+            }
+        }
+    }
+    assert!(compared >= 80, "{compared} models");
+}
+
+/// They describe the same plans: what one finds every other finds.
+#[test]
+fn all_rivals_of_a_family_have_one_optimum() {
+    for family in families() {
+        let extent = extent(&family);
+        for (name, instance) in seeded(&family, extent.optima, 2) {
+            let mut first = None;
+            for entry in catalogue::entries() {
+                if entry.family != family || entry.relaxation {
+                    continue;
+                }
+                let found = optimum(&entry.id, &instance);
+                let (id, value) = first.get_or_insert_with(|| (entry.id.clone(), found));
+                assert!(
+                    agree(found, *value, 1e-6),
+                    "{} on {name}: {found}, but {id}: {value}",
+                    entry.id
+                );
             }
         }
     }

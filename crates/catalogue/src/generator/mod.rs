@@ -4,11 +4,18 @@
 //! square, points in clusters, costs 0 and 1, and nearly symmetric costs (points with up to a
 //! tenth on top, drawn for each direction). Whole numbers, by PCG (O'Neill 2014) from the seed.
 
+mod blocks;
 mod draw;
 mod facilities;
+mod graphs;
+mod items;
 mod lots;
+mod networks;
+mod open_sites;
 mod path;
 mod round_trip;
+
+use blocks::Blocks;
 
 /// The class of data.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -41,8 +48,18 @@ impl Class {
 /// | `path` | nodes, some three arcs from each; the end can be reached | all |
 /// | `ufl` | facilities, twice as many clients | all but nearly symmetric |
 /// | `lot` | periods | uniform, clustered, 0 and 1 |
+/// | `limited-path` | nodes, some four arcs from each | all |
+/// | `cvrp` | depot and customers | all |
+/// | `cfl`, `p-median`, `p-centre` | sites, twice as many clients | all but nearly symmetric |
+/// | `tree`, `steiner` | nodes, half of which are to be connected | all but nearly symmetric |
+/// | `design` | nodes, about as many pairs with goods | all |
+/// | `matching`, `max-cut`, `stable-set` | nodes | all but nearly symmetric |
+/// | `colouring` | nodes | uniform, Euclidean, clustered |
+/// | `ordering` | items | uniform, 0 and 1, nearly symmetric |
+/// | `grouping` | items | all but nearly symmetric |
+/// | `hub` | places, two hubs; lengths of shortest ways | all |
 ///
-/// `O(size²)`.
+/// `O(size²)`; `hub` `O(size³)`.
 #[must_use]
 pub fn generate(family: &str, size: u32, class: Class, seed: u64) -> Option<String> {
     match family {
@@ -51,6 +68,27 @@ pub fn generate(family: &str, size: u32, class: Class, seed: u64) -> Option<Stri
         "path" => Some(path::network(size, class, seed)),
         "ufl" => facilities::sites(size, class, seed),
         "lot" => lots::periods(size, class, seed),
+        _ => blocks(family, size, class, seed).map(Blocks::text),
+    }
+}
+
+/// The families whose generators make their text by [`Blocks`].
+fn blocks(family: &str, size: u32, class: Class, seed: u64) -> Option<Blocks> {
+    match family {
+        "limited-path" => Some(networks::limited(size, class, seed)),
+        "cvrp" => Some(networks::vehicles(size, class, seed)),
+        "cfl" => open_sites::limited(size, class, seed),
+        "p-median" => open_sites::median(size, class, seed),
+        "p-centre" => open_sites::centre(size, class, seed),
+        "tree" => graphs::tree(size, class, seed),
+        "steiner" => graphs::steiner(size, class, seed),
+        "design" => Some(networks::design(size, class, seed)),
+        "matching" | "max-cut" => graphs::worths(size, class, seed),
+        "stable-set" => graphs::conflicts(size, class, seed),
+        "colouring" => graphs::colours(size, class, seed),
+        "ordering" => items::ordering(size, class, seed),
+        "grouping" => items::grouping(size, class, seed),
+        "hub" => Some(networks::hubs(size, class, seed)),
         _ => None,
     }
 }
@@ -59,8 +97,27 @@ pub fn generate(family: &str, size: u32, class: Class, seed: u64) -> Option<Stri
 mod tests {
     use super::*;
 
-    const FAMILIES: [(&str, usize); 5] =
-        [("atsp", 5), ("tsp", 4), ("path", 5), ("ufl", 4), ("lot", 3)];
+    const FAMILIES: [(&str, usize); 19] = [
+        ("atsp", 5),
+        ("tsp", 4),
+        ("path", 5),
+        ("ufl", 4),
+        ("lot", 3),
+        ("limited-path", 5),
+        ("cvrp", 5),
+        ("cfl", 4),
+        ("p-median", 4),
+        ("p-centre", 4),
+        ("tree", 4),
+        ("steiner", 4),
+        ("design", 5),
+        ("matching", 4),
+        ("stable-set", 4),
+        ("colouring", 3),
+        ("ordering", 3),
+        ("grouping", 4),
+        ("hub", 5),
+    ];
 
     #[test]
     fn the_same_seed_gives_the_same_text_and_another_seed_another() {

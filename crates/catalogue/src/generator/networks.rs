@@ -1,0 +1,136 @@
+//! Networks of arcs: what to build for goods, the shortest path within a limit, hubs, and rounds
+//! of vehicles, as named blocks.
+
+use super::Class;
+use super::blocks::{Blocks, names};
+use super::draw::Draw;
+
+/// Rounds from the first place: demands above 0, and vehicles that hold about two fifths of all.
+pub(super) fn vehicles(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut draw = Draw::new(seed);
+    let points = draw.points(size, class);
+    let places = names('n', points.len());
+    let mut costs = Vec::new();
+    for (from, &here) in places.iter().zip(&points) {
+        for (to, &there) in places.iter().zip(&points) {
+            if from != to {
+                costs.push(format!("{from} {to} {}", draw.cost(class, here, there)));
+            }
+        }
+    }
+    let most = if class == Class::ZeroOne { 1 } else { 9 };
+    let drawn = places.iter().skip(1).map(|_| 1 + draw.below(most));
+    let demands: Vec<i64> = std::iter::once(0).chain(drawn).collect();
+    let (all, largest) = (demands.iter().sum::<i64>(), demands.iter().max().copied());
+    let demands: Vec<String> =
+        places.iter().zip(&demands).map(|(place, demand)| format!("{place} {demand}")).collect();
+    let mut out = Blocks::new();
+    out.list("V", &places);
+    out.by("c", "i, j", &costs);
+    out.by("q", "i", &demands);
+    out.value("Q", largest.unwrap_or(0).max((2 * all + 4) / 5));
+    out.value("r", &places[0]);
+    out
+}
+
+/// Arcs from each node to the next, in a ring, and some two more to others; as many pairs with
+/// goods as there are nodes. To build costs about as much as to carry a few units.
+pub(super) fn design(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut draw = Draw::new(seed);
+    let points = draw.points(size, class);
+    let (count, others) = (points.len(), i64::from(size));
+    let nodes = names('n', count);
+    let (mut arcs, mut building, mut carrying) = (Vec::new(), Vec::new(), Vec::new());
+    let (mut pairs, mut units) = (Vec::new(), Vec::new());
+    for i in 0..count {
+        for j in (0..count).filter(|&j| j != i) {
+            let name = format!("{} {}", nodes[i], nodes[j]);
+            if j == (i + 1) % count || draw.below(others) < 2 {
+                let cost = draw.cost(class, points[i], points[j]);
+                building.push(format!("{name} {}", 3 * cost + 1 + draw.below(20)));
+                carrying.push(format!("{name} {cost}"));
+                arcs.push(name.clone());
+            }
+            if j == (i + 2) % count || draw.below(2 * others) == 0 {
+                units.push(format!("{name} {}", 1 + draw.below(9)));
+                pairs.push(name);
+            }
+        }
+    }
+    let mut out = Blocks::new();
+    out.list("V", &nodes);
+    out.by("A", "i, j", &arcs);
+    out.by("f", "i, j", &building);
+    out.by("c", "i, j", &carrying);
+    out.by("K", "s, t", &pairs);
+    out.by("d", "s, t", &units);
+    out
+}
+
+/// From each node an arc to the next, which is long and takes little, and some two more to
+/// others; the limit is what the way by all nodes takes.
+pub(super) fn limited(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut draw = Draw::new(seed);
+    let points = draw.points(size, class);
+    let (count, others) = (points.len(), i64::from(size));
+    let nodes = names('n', count);
+    let (mut lengths, mut amounts) = (Vec::new(), Vec::new());
+    for i in 0..count {
+        for j in (0..count).filter(|&j| j != i) {
+            let next = j == i + 1;
+            if next || draw.below(others) < 3 {
+                let name = format!("{} {}", nodes[i], nodes[j]);
+                let length = draw.cost(class, points[i], points[j]);
+                let amount = if next { 1 } else { 2 + draw.below(others / 2 + 1) };
+                lengths.push(format!("{name} {}", if next { 2 * length } else { length }));
+                amounts.push(format!("{name} {amount}"));
+            }
+        }
+    }
+    let mut out = Blocks::new();
+    out.list("V", &nodes);
+    out.by("c", "i, j", &lengths);
+    out.by("a", "i, j", &amounts);
+    out.value("W", size.saturating_sub(1));
+    out.value("s", &nodes[0]);
+    out.value("t", &nodes[count - 1]);
+    out
+}
+
+/// Places with the lengths of shortest ways, so that no way over a third place is shorter, and
+/// two hubs.
+pub(super) fn hubs(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut draw = Draw::new(seed);
+    let points = draw.points(size, class);
+    let count = points.len();
+    let nodes = names('n', count);
+    let mut ways = vec![vec![0; count]; count];
+    for i in 0..count {
+        for j in (0..count).filter(|&j| j != i) {
+            ways[i][j] = draw.cost(class, points[i], points[j]);
+        }
+    }
+    for k in 0..count {
+        for i in 0..count {
+            for j in 0..count {
+                ways[i][j] = ways[i][j].min(ways[i][k] + ways[k][j]);
+            }
+        }
+    }
+    let (mut lengths, mut units) = (Vec::new(), Vec::new());
+    for i in 0..count {
+        for j in 0..count {
+            let sent = if i == j { 0 } else { draw.below(10) };
+            lengths.push(format!("{} {} {}", nodes[i], nodes[j], ways[i][j]));
+            units.push(format!("{} {} {sent}", nodes[i], nodes[j]));
+        }
+    }
+    let mut out = Blocks::new();
+    out.list("V", &nodes);
+    out.by("c", "i, j", &lengths);
+    out.by("w", "i, j", &units);
+    for (name, value) in [("p", 2), ("χ", 3), ("α", 1), ("δ", 2)] {
+        out.value(name, value);
+    }
+    out
+}

@@ -1,0 +1,200 @@
+//! The sizes that the files of networks, routing, facilities and graphs state, as numbers.
+
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test ends where it fails")]
+
+use std::collections::BTreeSet;
+
+use instance::{Datum, Instance};
+
+/// Columns, rows and families over subsets.
+type Size = (usize, usize, usize);
+
+/// How many members a set has.
+fn count(instance: &Instance, name: &str) -> usize {
+    match instance.get(name) {
+        Some(Datum::Labels(labels)) => labels.len(),
+        Some(Datum::Tuples { rows, .. }) => rows.len(),
+        Some(Datum::Table { cells, .. }) => cells.len(),
+        other => panic!("{name} is {other:?}"),
+    }
+}
+
+/// A whole number of the instance.
+fn whole(instance: &Instance, name: &str) -> usize {
+    let Some(Datum::Number(value)) = instance.get(name) else { panic!("no number {name}") };
+    value.to_string().parse().unwrap()
+}
+
+/// Places, drives or edges, and the size.
+pub(crate) fn networks(id: &str, instance: &Instance) -> Option<Size> {
+    let (family, _) = id.split_once('/')?;
+    match family {
+        "atsp" | "tsp" => round_trips(id, count(instance, "V")),
+        "cvrp" => vehicles(id, count(instance, "V")),
+        "limited-path" => limited(id, instance),
+        "cfl" | "p-median" | "p-centre" => sites(id, instance),
+        "tree" | "steiner" => trees(id, instance),
+        "design" => {
+            let [n, a, k] = ["V", "A", "K"].map(|name| count(instance, name));
+            let links = if id == "design/joined" { a } else { k * a };
+            Some((a + k * a, k * n + links, 0))
+        }
+        "matching" | "stable-set" | "max-cut" | "colouring" => graphs(id, instance),
+        _ => items(id, count(instance, "V")),
+    }
+}
+
+fn round_trips(id: &str, n: usize) -> Option<Size> {
+    let (stops, drives) = (n - 1, n * (n - 1));
+    let (inner, triples) = ((n - 1) * (n - 2), (n - 1) * (n - 2) * (n - 3));
+    Some(match id {
+        "atsp/tight-one-commodity" => (2 * drives, 2 * n + 3 * stops + 2 * inner, 0),
+        "atsp/time-staged" => ((n + 1) * drives, 2 * n + drives + stops, 0),
+        "atsp/legs" => (drives + (n - 2) * inner + stops * stops, 2 * n + 3 * stops + 3 * inner, 0),
+        "atsp/precedence-labels" => (drives + inner, 2 * n + 2 * inner + triples, 0),
+        "atsp/precedence" => (drives + inner, 2 * n + 3 * inner / 2 + triples, 0),
+        "atsp/rlt-labels" => (2 * drives + n, 2 * n + 5 * n - 4 + 4 * inner, 0),
+        "tsp/degrees" => (drives / 2, n, 0),
+        "tsp/two-commodity" => (3 * drives / 2, 2 * n - 1 + drives / 2, 0),
+        _ => return None,
+    })
+}
+
+fn vehicles(id: &str, n: usize) -> Option<Size> {
+    let (stops, drives, inner) = (n - 1, n * (n - 1), (n - 1) * (n - 2));
+    Some(match id {
+        "cvrp/load-labels" | "cvrp/lifted-load-labels" => (drives + stops, 2 * stops + inner, 0),
+        "cvrp/load-flow" => (2 * drives, 3 * stops + drives, 0),
+        "cvrp/tight-load-flow" => (2 * drives, 3 * stops + 2 * drives, 0),
+        "cvrp/fractional-cuts" | "cvrp/capacity-cuts" => (drives, 2 * stops, 1),
+        _ => return None,
+    })
+}
+
+/// The layered form has a column for each arc and each amount from which the arc can be taken.
+fn limited(id: &str, instance: &Instance) -> Option<Size> {
+    let Some(Datum::Table { cells, .. }) = instance.get("a") else { panic!("no amounts") };
+    let [n, arcs] = ["V", "c"].map(|name| count(instance, name));
+    if id == "limited-path/flow" {
+        return Some((arcs, n + 1, 0));
+    }
+    let Some(Datum::Element(last)) = instance.get("t") else { panic!("no end") };
+    let limit = whole(instance, "W");
+    let (mut columns, mut touched) = (arcs, BTreeSet::new());
+    for (key, amount) in cells.iter().filter(|(key, _)| key[0] != *last) {
+        let amount: usize = amount.to_string().parse().unwrap();
+        for used in 0..(limit + 1).saturating_sub(amount) {
+            columns += 1;
+            touched.insert((&key[0], used));
+            if key[1] != *last {
+                touched.insert((&key[1], used + amount));
+            }
+        }
+    }
+    // The start without use is not in transit.
+    Some((columns, arcs + 2 + touched.len() - 1, 0))
+}
+
+fn sites(id: &str, instance: &Instance) -> Option<Size> {
+    let [i, j] = ["I", "J"].map(|name| count(instance, name));
+    Some(match id {
+        "cfl/joined" => (i * j + i, j + i, 0),
+        "cfl/total" => (i * j + i, j + i + 1, 0),
+        "cfl/split" => (i * j + i, j + i + i * j, 0),
+        "p-median/joined" => (i * j + i, j + i + 1, 0),
+        "p-median/split" => (i * j + i, j + i * j + 1, 0),
+        "p-median/radius" => {
+            let radii = distances(instance).1 - j;
+            (i + radii, radii + 1, 0)
+        }
+        "p-centre/assignment" => (i * j + i + 1, 2 * j + i * j + 1, 0),
+        "p-centre/radius" => {
+            let radii = distances(instance).0 - 1;
+            (i + radii, radii * j + 1, 0)
+        }
+        _ => return None,
+    })
+}
+
+/// How many different distances there are, and how many of a client for all clients together.
+fn distances(instance: &Instance) -> (usize, usize) {
+    let Some(Datum::Table { cells, .. }) = instance.get("d") else { panic!("no distances") };
+    let all: BTreeSet<String> = cells.values().map(ToString::to_string).collect();
+    let each: BTreeSet<_> = cells.iter().map(|(key, d)| (&key[1], d.to_string())).collect();
+    (all.len(), each.len())
+}
+
+fn trees(id: &str, instance: &Instance) -> Option<Size> {
+    let [n, m] = ["V", "E"].map(|name| count(instance, name));
+    Some(match id {
+        "tree/subtours" | "tree/cuts" => (m, 1, 1),
+        "tree/directed-cuts" => (3 * m, m + 1, 1),
+        "tree/one-commodity" => (3 * m, 2 * m + n, 0),
+        "tree/multi-commodity" => (m + 2 * m * n, 1 + m + (n - 1) * (n + 2 * m), 0),
+        "tree/labels" => (3 * m + n, 3 * m + n, 0),
+        _ => return steiner(id, instance, n, m),
+    })
+}
+
+fn steiner(id: &str, instance: &Instance, n: usize, m: usize) -> Option<Size> {
+    let k = count(instance, "R");
+    Some(match id {
+        "steiner/one-commodity" => (3 * m, m + n - 1, 0),
+        "steiner/cuts" => (m, 0, 1),
+        "steiner/undirected-flow" => (m + 2 * m * (k - 1), (n + m) * (k - 1), 0),
+        "steiner/directed-cuts" => (3 * m, m, 1),
+        "steiner/multi-commodity" => (3 * m + 2 * m * (k - 1), m + (n + 2 * m) * (k - 1), 0),
+        "steiner/balanced-cuts" => (3 * m, m + n - k, 1),
+        _ => return None,
+    })
+}
+
+fn graphs(id: &str, instance: &Instance) -> Option<Size> {
+    let [n, m] = ["V", "E"].map(|name| count(instance, name));
+    Some(match id {
+        "matching/degree" => (m, n, 0),
+        "matching/odd-sets" => (m, n, 1),
+        "stable-set/stars" => (n, n, 0),
+        "stable-set/edges" => (n, m, 0),
+        "stable-set/cliques" => (n, m, 1),
+        "max-cut/sides" => (m + n, 2 * m, 0),
+        "max-cut/triangles" => (n * (n - 1) / 2, 2 * n * (n - 1) * (n - 2) / 3, 0),
+        "colouring/representatives" => representatives(instance),
+        _ => {
+            let h = whole(instance, "h");
+            let rows = n + h * (m + n);
+            match id {
+                "colouring/assignment" => (h * (n + 1), rows, 0),
+                "colouring/ordered" => (h * (n + 1), rows + 2 * h - 1, 0),
+                "colouring/cliques" => (h * (n + 1), rows, h),
+                _ => return None,
+            }
+        }
+    })
+}
+
+/// Nodes are listed in the order of their labels' numbers.
+fn representatives(instance: &Instance) -> Size {
+    let Some(Datum::Tuples { rows, .. }) = instance.get("E") else { panic!("no edges") };
+    let number = |label: &String| label.trim_start_matches('n').parse::<usize>().unwrap();
+    let edges: BTreeSet<_> = rows.iter().map(|e| (number(&e[0]), number(&e[1]))).collect();
+    let n = count(instance, "V");
+    let free = |i: usize, j: usize| i < j && !edges.contains(&(i, j));
+    let pairs = (1..=n).map(|i| (1..=n).filter(|&j| free(i, j)).count()).sum::<usize>();
+    let conflict = |i: usize| edges.iter().filter(|&&(j, k)| free(i, j) && free(i, k)).count();
+    (n + pairs, n + pairs + (1..=n).map(conflict).sum::<usize>(), 0)
+}
+
+fn items(id: &str, n: usize) -> Option<Size> {
+    let (pairs, triples) = (n * (n - 1) / 2, n * (n - 1) * (n - 2) / 6);
+    Some(match id {
+        "ordering/labels" => (n * n, 3 * pairs, 0),
+        "ordering/dicycles" => (2 * pairs, pairs + 2 * triples, 0),
+        "grouping/triangles" => (pairs, 3 * triples, 0),
+        "grouping/assignment" => (pairs + n * n, n + 3 * n * pairs, 0),
+        "grouping/representatives" => (n * n, n + pairs + 2 * (n + 1) * n * (n - 1) / 3, 0),
+        "hub/paths" => (n * n + n.pow(4), n * n + 1 + 2 * n.pow(3), 0),
+        "hub/flow" => (n * n + n.pow(3), 2 * n * n + 1, 0),
+        _ => return None,
+    })
+}

@@ -1,0 +1,65 @@
+//! The families of the catalogue and their seeded instances: how large, and how many, so that
+//! the checks of theorems and of optima run over every family that has a generator.
+
+use catalogue::{Class, entries, generate};
+use instance::Instance;
+
+use crate::round_trip::instance;
+
+/// What the checks run on in one family.
+#[derive(Debug, Clone, Copy)]
+pub struct Extent {
+    /// Sizes for the relations of bounds.
+    pub bounds: &'static [u32],
+    /// Sizes for optima: a whole search for each rival.
+    pub optima: &'static [u32],
+    /// Seeds of each size and class.
+    pub seeds: u64,
+}
+
+/// How large and how many the instances of a family are. What `size` counts says
+/// [`catalogue::generate`].
+#[must_use]
+pub fn extent(family: &str) -> Extent {
+    let of = |bounds, optima, seeds| Extent { bounds, optima, seeds };
+    match family {
+        "atsp" => of(&[4, 6, 8], &[4, 5, 6], 10),
+        "tsp" | "path" | "ufl" | "lot" => of(&[4, 6, 9], &[4, 7], 5),
+        _ => of(&[4, 5, 6], &[4, 5], 3),
+    }
+}
+
+/// Every family with a generator, once, in the catalogue's order.
+#[must_use]
+pub fn families() -> Vec<String> {
+    let mut out: Vec<String> = Vec::new();
+    for entry in entries() {
+        let made = Class::ALL.iter().any(|&class| generate(&entry.family, 5, class, 1).is_some());
+        if made && !out.contains(&entry.family) {
+            out.push(entry.family);
+        }
+    }
+    out
+}
+
+/// Instances of a family in every class that it has, each with a name that tells how to make it
+/// again.
+///
+/// # Panics
+/// When the family has no generator, or an instance cannot be read.
+#[must_use]
+pub fn seeded(family: &str, sizes: &[u32], seeds: u64) -> Vec<(String, Instance)> {
+    let mut out = Vec::new();
+    for &size in sizes {
+        for class in Class::ALL {
+            for seed in 1..=seeds {
+                if let Some(text) = generate(family, size, class, seed) {
+                    let name = format!("{family}, {class:?}, {size}, seed {seed}");
+                    out.push((name, instance(&text)));
+                }
+            }
+        }
+    }
+    assert!(!out.is_empty(), "{family} has no generator");
+    out
+}

@@ -111,7 +111,7 @@ atsp/labels, prints the text of that one, ready to be changed.
 ";
 
 const DIGEST: &str = "\
-hullward digest FILE [--slice TICKS]
+hullward digest FILE [--slice TICKS] [--runs N]
 
 Runs each rival of a scenario on its first instance and prints its letter, the
 number of events of its search and the digest of their bytes. The line is the same
@@ -119,4 +119,6 @@ on every machine and for every size of slice; no clock stops it, only the
 scenario's limits of nodes and iterations.
 
   --slice TICKS   non-zeros touched a slice (2000000 unless given)
+  --runs N        run each so often, once more to begin with, and put the shortest
+                  time in milliseconds behind its digest
 ";

@@ -56,6 +56,6 @@ fn carry_out(call: &Call, out: &mut dyn Write, err: &mut dyn Write) -> std::io::
         Call::Read(file) => read::read(file, out, err),
         Call::Write(options) => write::write(options, out, err),
         Call::List(id) => list::list(id.as_deref(), out, err),
-        Call::Digest { file, slice } => digest::digest(file, *slice, out, err),
+        Call::Digest(options) => digest::digest(options, out, err),
     }
 }

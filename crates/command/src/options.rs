@@ -15,10 +15,7 @@ pub(crate) enum Call {
     Read(String),
     Write(WriteOptions),
     List(Option<String>),
-    Digest {
-        file: String,
-        slice: u64,
-    },
+    Digest(DigestOptions),
 }
 
 /// How `run` is asked for.
@@ -32,6 +29,16 @@ pub(crate) struct RunOptions {
     pub(crate) rival: Option<String>,
     /// Where the log is saved.
     pub(crate) log: Option<String>,
+}
+
+/// How `digest` is asked for.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) struct DigestOptions {
+    pub(crate) file: String,
+    /// Ticks a slice.
+    pub(crate) slice: u64,
+    /// How often each rival is run on the clock; 0 is once, without one.
+    pub(crate) runs: u64,
 }
 
 /// How `write` is asked for.
@@ -190,21 +197,21 @@ fn list(words: &[String]) -> Result<Call, String> {
 
 fn digest(words: &[String]) -> Result<Call, String> {
     let mut files = Vec::new();
-    let mut slice = engine::native::USUAL_SLICE;
+    let (mut slice, mut runs) = (engine::native::USUAL_SLICE, 0);
     let mut words = words.iter();
     while let Some(word) = words.next() {
-        if word == "--slice" {
-            let ticks = value(word, words.next())?;
-            slice = ticks
-                .parse()
-                .ok()
-                .filter(|ticks| *ticks > 0)
-                .ok_or_else(|| format!("--slice needs a whole number over 0, not {ticks}"))?;
-        } else {
-            files.push(word.clone());
+        match word.as_str() {
+            "--slice" => slice = positive(word, value(word, words.next())?)?,
+            "--runs" => runs = positive(word, value(word, words.next())?)?,
+            _ => files.push(word.clone()),
         }
     }
-    one(&files, "digest").map(|file| Call::Digest { file, slice })
+    one(&files, "digest").map(|file| Call::Digest(DigestOptions { file, slice, runs }))
+}
+
+fn positive(option: &str, word: &str) -> Result<u64, String> {
+    let number = word.parse().ok().filter(|number| *number > 0);
+    number.ok_or_else(|| format!("{option} needs a whole number over 0, not {word}"))
 }
 
 /// The only word, which is no option.
@@ -258,8 +265,8 @@ mod tests {
         };
         let line = "write a --rival b --as mps -o b.mps --instance 2";
         assert_eq!(call(line), Ok(Call::Write(write)));
-        let digest = Call::Digest { file: "a".to_owned(), slice: 99 };
-        assert_eq!(call("digest a --slice 99"), Ok(digest));
+        let digest = DigestOptions { file: "a".to_owned(), slice: 99, runs: 3 };
+        assert_eq!(call("digest a --slice 99 --runs 3"), Ok(Call::Digest(digest)));
     }
 
     #[test]
@@ -276,6 +283,7 @@ mod tests {
             "read",
             "read a b",
             "digest a --slice 0",
+            "digest a --runs x",
             "write a",
             "write --as mps",
             "write a --as mps --instance 0",

@@ -10,7 +10,7 @@
 use dashu_int::{IBig, ops::BitTest};
 use model::{Number, Sense};
 
-use crate::basis::{Standings, System, Vertex};
+use crate::basis::{Standing, Standings, System, Vertex};
 use crate::bound::closed;
 use crate::kernel::Objective;
 use crate::lifting::{Elimination, Eliminator, Factor, Fractions, Lifting};
@@ -89,6 +89,8 @@ pub struct Certifier {
     vertex: Option<Vertex>,
     tried: Vec<Variable>,
     rounds: usize,
+    /// Whether a singular basis was repaired.
+    repaired: bool,
     ticks: u64,
     bound: Option<Number>,
     exact: bool,
@@ -111,6 +113,7 @@ impl Certifier {
             vertex: None,
             tried: Vec::new(),
             rounds: 0,
+            repaired: false,
             ticks: 0,
             bound: None,
             exact: false,
@@ -151,6 +154,7 @@ impl Certifier {
             && basis != self.basis
         {
             self.basis = basis;
+            self.repaired = false;
             self.stage = Stage::Begin;
         }
     }
@@ -232,7 +236,8 @@ impl Certifier {
         self.ticks += eliminator.work() - before;
         match (state, &self.system) {
             (Elimination::Working, _) => Stage::Eliminate(eliminator),
-            (Elimination::Singular, _) | (_, None) => Stage::Done,
+            (Elimination::Singular, _) => self.repair(eliminator),
+            (_, None) => Stage::Done,
             (Elimination::Done, Some(system)) => {
                 self.factor = Some(eliminator.finish());
                 match self.wish {
@@ -243,6 +248,23 @@ impl Certifier {
                 }
             }
         }
+    }
+
+    /// A basis that is regular in floating-point arithmetic alone: rows that depend on the others
+    /// become slack, and as many columns leave. Once a basis, for what is left is regular.
+    fn repair(&mut self, eliminator: Eliminator) -> Stage {
+        let Some(system) = self.system.take().filter(|_| !self.repaired) else {
+            return Stage::Done;
+        };
+        self.repaired = true;
+        let (rows, columns) = eliminator.into_dependent();
+        for row in rows {
+            self.basis.rows[system.rows[row as usize] as usize] = Standing::Basic;
+        }
+        for column in columns {
+            self.basis.columns[system.columns[column as usize] as usize] = Standing::Lower;
+        }
+        Stage::Begin
     }
 
     fn lift(&mut self, lifting: &mut Lifting) -> Lifted {

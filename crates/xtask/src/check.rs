@@ -6,7 +6,7 @@ use crate::fault::Fault;
 use crate::options::Part;
 use crate::process::{run, step};
 use crate::workplace::{DATA, Workplace};
-use crate::{bundle, packages, parity};
+use crate::{bundle, counts, packages, parity};
 
 const REFERENCE: &str = "hullward-tests-reference";
 const BENCH: &str = "hullward-tests-bench";
@@ -24,6 +24,7 @@ pub(crate) fn run_parts(place: &Workplace, parts: &[Part]) -> Result<(), Fault> 
     for part in parts {
         match part {
             Part::Native => native(place)?,
+            Part::Counts => step("instructions of fixed solves", || counts::check(place, false))?,
             Part::Page => page(place)?,
             Part::Browser => browser(place)?,
             Part::Reference => reference(place)?,

@@ -92,6 +92,25 @@ impl Compiler {
     }
 }
 
+impl Compiler {
+    /// `cargo build --release` of a native package by the same compiler, into the same folder.
+    pub(crate) fn build_native(&self, place: &Workplace, name: &str) -> Command {
+        let mut command = match self {
+            Compiler::Rustup => Command::new(std::env::var_os("CARGO").unwrap_or("cargo".into())),
+            Compiler::Debian { cargo, .. } => Command::new(cargo),
+        };
+        command.current_dir(place.root()).args(["build", "--release", "--package", name]);
+        for inherited in ["RUSTFLAGS", "RUSTUP_TOOLCHAIN", "LD_LIBRARY_PATH"] {
+            command.env_remove(inherited);
+        }
+        command.env("CARGO_TARGET_DIR", place.wasm_target());
+        if let Compiler::Debian { rustc, rustdoc, .. } = self {
+            command.env("RUSTC", rustc).env("RUSTDOC", rustdoc).env("RUSTC_BOOTSTRAP", "1");
+        }
+        command
+    }
+}
+
 /// Flags that keep this machine's folders out of the modules.
 fn remapped(place: &Workplace) -> Vec<String> {
     let home = std::env::var_os("CARGO_HOME")

@@ -14,6 +14,7 @@ mod bench;
 mod bundle;
 mod check;
 mod compiler;
+mod counts;
 mod fault;
 mod html;
 mod options;
@@ -23,6 +24,7 @@ mod parity;
 mod process;
 mod serve;
 mod streams;
+mod wasm;
 mod workplace;
 
 use std::process::ExitCode;
@@ -55,6 +57,10 @@ fn carry_out(task: &Task) -> Result<(), Fault> {
         }
         Task::Serve { port } => serve::serve(&place.dist(), *port),
         Task::Test { only } => check::run_parts(&place, only),
+        Task::Counts { write } => counts::check(&place, *write),
+        Task::Bench { arguments } if arguments.first().is_some_and(|word| word == "wasm") => {
+            wasm::measure(&place)
+        }
         Task::Bench { arguments } => bench::measure(&place, arguments),
     }
 }

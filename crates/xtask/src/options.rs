@@ -6,8 +6,10 @@ use crate::fault::Fault;
 pub(crate) const USAGE: &str = "\
 cargo xtask page [--port P] [--no-serve]   build the page into web/dist, then serve it
 cargo xtask serve [--port P]               serve web/dist as it is
-cargo xtask test [--only PART]...          what CI runs; PART: native, page, browser, reference
+cargo xtask test [--only PART]...          what CI runs; PART: native, counts, page, browser, reference
+cargo xtask counts [--write]               instructions of fixed solves against the list of them
 cargo xtask bench lp [--quick] ...         speed of the linear programs; `bench help` says more
+cargo xtask bench wasm                     the built page's engine under Node against the native one
 
 --port P      the port on 127.0.0.1 (8080; 0 takes any free one)
 --no-serve    build only
@@ -37,6 +39,11 @@ pub(crate) enum Task {
         /// The parts to run, in their order.
         only: Vec<Part>,
     },
+    /// Count instructions.
+    Counts {
+        /// Whether to write the list anew.
+        write: bool,
+    },
     /// Measure speed.
     Bench {
         /// What to measure, as tests/bench reads it.
@@ -49,6 +56,8 @@ pub(crate) enum Task {
 pub(crate) enum Part {
     /// Format, lint, documentation and tests of everything that builds natively.
     Native,
+    /// Instructions of fixed solves against the list of them.
+    Counts,
     /// The page, its size, and its engine under Node against the native one.
     Page,
     /// The built page in Chromium.
@@ -59,16 +68,19 @@ pub(crate) enum Part {
 
 impl Part {
     /// All parts, quick ones first.
-    pub(crate) const ALL: [Part; 4] = [Part::Native, Part::Page, Part::Browser, Part::Reference];
+    pub(crate) const ALL: [Part; 5] =
+        [Part::Native, Part::Counts, Part::Page, Part::Browser, Part::Reference];
 
     fn named(name: &str) -> Result<Part, Fault> {
         match name {
             "native" => Ok(Part::Native),
+            "counts" => Ok(Part::Counts),
             "page" => Ok(Part::Page),
             "browser" => Ok(Part::Browser),
             "reference" => Ok(Part::Reference),
             other => Err(Fault::new(format!(
-                "there is no part {other:?}; the parts are native, page, browser and reference"
+                "there is no part {other:?}; the parts are native, counts, page, browser and \
+                 reference"
             ))),
         }
     }
@@ -88,6 +100,7 @@ pub(crate) fn parse(arguments: &[String]) -> Result<Task, Fault> {
         "page" => page(&mut rest)?,
         "serve" => serve(&mut rest)?,
         "test" => test(&mut rest)?,
+        "counts" => counts(&mut rest)?,
         other => return Err(Fault::new(format!("there is no task {other:?}\n\n{USAGE}"))),
     };
     match rest.next() {
@@ -138,6 +151,14 @@ fn test<'a>(rest: &mut impl Iterator<Item = &'a str>) -> Result<Task, Fault> {
     Ok(Task::Test { only })
 }
 
+fn counts<'a>(rest: &mut impl Iterator<Item = &'a str>) -> Result<Task, Fault> {
+    match rest.next() {
+        None => Ok(Task::Counts { write: false }),
+        Some("--write") => Ok(Task::Counts { write: true }),
+        Some(other) => Err(unknown(other, "counts")),
+    }
+}
+
 fn read_port(text: Option<&str>) -> Result<u16, Fault> {
     let text = text.ok_or_else(|| Fault::new("--port needs a number"))?;
     text.parse()
@@ -177,11 +198,18 @@ mod tests {
 
     #[test]
     fn what_is_not_understood_is_said() {
-        for line in ["pages", "page --prot 1", "page --port", "page --port 70000", "test --only x"]
-        {
+        assert_eq!(read("counts --write"), Ok(Task::Counts { write: true }));
+        for line in [
+            "pages",
+            "counts --wirte",
+            "page --prot 1",
+            "page --port",
+            "page --port 70000",
+            "test --only x",
+        ] {
             assert!(read(line).is_err(), "{line}");
         }
         let Err(fault) = read("test --only x") else { panic!("accepted") };
-        assert!(fault.to_string().contains("native, page, browser and reference"));
+        assert!(fault.to_string().contains("native, counts, page, browser and reference"));
     }
 }

@@ -40,7 +40,7 @@ pub(crate) fn check(place: &Workplace) -> Result<(), Fault> {
 }
 
 /// The ready scenarios and the small ones of the tests, in order of name.
-fn scenarios(place: &Workplace) -> Result<Vec<PathBuf>, Fault> {
+pub(crate) fn scenarios(place: &Workplace) -> Result<Vec<PathBuf>, Fault> {
     let mut found = Vec::new();
     for folder in ["scenarios", "tests/browser/fixtures"] {
         let folder = place.root().join(folder);

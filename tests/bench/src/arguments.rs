@@ -6,8 +6,16 @@ use crate::solvers::Solver;
 
 /// What can be asked for.
 pub(crate) const USAGE: &str = "\
-cargo xtask bench lp [roots] [children] [growth] [instructions] [options]
-    all but instructions when no part is named
+cargo xtask bench lp [PART]... [options]
+    roots         root relaxations beside HiGHS and microlp, presolve off
+    children      solves after one bound change
+    presolved     roots with presolve beside roots without, ours and HiGHS
+    proofs        what the exact check of a root costs beside its solve
+    growth        time over size
+    instructions  counts by callgrind; only when it is named
+
+cargo xtask bench wasm
+    the built page's engine under Node beside the native one
 
 --quick         5 samples instead of 15, no fresh seeds
 --seeds A,B     these fresh seeds beside seed 1, instead of two from the clock
@@ -18,6 +26,8 @@ cargo xtask bench lp [roots] [children] [growth] [instructions] [options]
 pub(crate) struct Tables {
     pub(crate) roots: bool,
     pub(crate) children: bool,
+    pub(crate) presolved: bool,
+    pub(crate) proofs: bool,
     pub(crate) growth: bool,
     pub(crate) instructions: bool,
 }
@@ -90,6 +100,8 @@ pub(crate) fn parse(words: &[String]) -> Result<Arguments, String> {
         match word {
             "roots" => tables.roots = true,
             "children" => tables.children = true,
+            "presolved" => tables.presolved = true,
+            "proofs" => tables.proofs = true,
             "growth" => tables.growth = true,
             "instructions" => tables.instructions = true,
             "--quick" => (arguments.effort, arguments.seeds) = (Effort::QUICK, Vec::new()),
@@ -99,7 +111,14 @@ pub(crate) fn parse(words: &[String]) -> Result<Arguments, String> {
         }
     }
     if tables == Tables::default() {
-        tables = Tables { roots: true, children: true, growth: true, instructions: false };
+        tables = Tables {
+            roots: true,
+            children: true,
+            presolved: true,
+            proofs: true,
+            growth: true,
+            instructions: false,
+        };
     }
     arguments.part = Part::Tables(tables);
     Ok(arguments)

@@ -15,7 +15,9 @@ mod clock;
 mod growth;
 mod highs_peer;
 mod instructions;
+mod presolved;
 mod problems;
+mod proofs;
 mod roots;
 mod sampling;
 mod shadow;
@@ -58,6 +60,12 @@ fn carry_out(arguments: &Arguments) {
             }
             if parts.children {
                 children::run(arguments);
+            }
+            if parts.presolved {
+                presolved::run(arguments);
+            }
+            if parts.proofs {
+                proofs::run(arguments);
             }
             if parts.growth {
                 growth::run();

@@ -3,7 +3,7 @@
 use crate::clock;
 use crate::highs_peer;
 use crate::shadow::Shadow;
-use lp::{Col, Limits, Outcome, Problem, Simplex};
+use lp::{Col, Limits, Outcome, Problem, Simplex, solve_presolved};
 
 /// One who solves.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -16,6 +16,10 @@ pub(crate) enum Solver {
     Highs,
     /// microlp.
     Microlp,
+    /// Our simplex after our presolve, with the way back.
+    Presolved,
+    /// HiGHS after its own presolve, with the way back.
+    HighsPresolved,
 }
 
 impl Solver {
@@ -27,6 +31,8 @@ impl Solver {
             Self::Again => "again",
             Self::Highs => "HiGHS",
             Self::Microlp => "microlp",
+            Self::Presolved => "presolved",
+            Self::HighsPresolved => "HiGHS presolved",
         }
     }
 }
@@ -46,7 +52,9 @@ pub(crate) struct Sample {
 pub(crate) fn sample(solver: Solver, lp: &Shadow, count: usize) -> Sample {
     let (last, seconds) = match solver {
         Solver::Ours | Solver::Again => ours(lp, count),
-        Solver::Highs => highs(lp, count),
+        Solver::Highs => highs(lp, count, "off"),
+        Solver::HighsPresolved => highs(lp, count, "on"),
+        Solver::Presolved => presolved(lp, count),
         Solver::Microlp => microlp(lp, count),
     };
     Sample { seconds: seconds / count as f64, iterations: last.0, objective: last.1 }
@@ -83,8 +91,23 @@ fn ours(lp: &Shadow, count: usize) -> Timed {
     ((last.stats().iterations, solution.objective), seconds)
 }
 
-fn highs(lp: &Shadow, count: usize) -> Timed {
-    let ready: Vec<highs::Model> = (0..count).map(|_| highs_peer::model(lp).0).collect();
+fn presolved(lp: &Shadow, count: usize) -> Timed {
+    let ready: Vec<Problem> = vec![problem(lp); count];
+    let (solved, seconds) = clock::timed(|| ready.iter().map(solve_presolved).collect::<Vec<_>>());
+    let last = &solved[count - 1];
+    let outcome = last.simplex.outcome();
+    let Some(Outcome::Optimal(solution)) = outcome else { panic!("{outcome:?}") };
+    let iterations = last.reduced.iterations + last.simplex.stats().iterations;
+    ((iterations, solution.objective), seconds)
+}
+
+fn highs(lp: &Shadow, count: usize, presolve: &str) -> Timed {
+    let ready = (0..count).map(|_| {
+        let mut model = highs_peer::model(lp).0;
+        model.set_option("presolve", presolve);
+        model
+    });
+    let ready: Vec<highs::Model> = ready.collect();
     let (solved, seconds) = clock::timed(|| {
         ready.into_iter().map(highs::Model::solve).collect::<Vec<highs::SolvedModel>>()
     });

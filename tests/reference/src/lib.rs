@@ -7,14 +7,17 @@
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 #![allow(clippy::print_stderr, reason = "a check says what it passed over")]
 
+pub mod falsify;
 pub mod golden;
 pub mod independent;
 pub mod kernel;
+pub mod parts;
 pub mod random_lp;
 pub mod round_trip;
 pub mod seeded;
 pub mod theory;
 
+use std::io::Read;
 use std::path::PathBuf;
 
 /// A file of the open data, as text. `None` when it is not there: the check then says where
@@ -25,7 +28,10 @@ use std::path::PathBuf;
 #[must_use]
 pub fn open_data(file: &str, published: &str) -> Option<String> {
     let folder = std::env::var_os("HULLWARD_DATA").map(PathBuf::from);
-    let text = folder.and_then(|folder| std::fs::read(folder.join(file)).ok());
+    let text = folder.and_then(|folder| {
+        let path = folder.join(file);
+        std::fs::read(&path).ok().or_else(|| unpacked(path.with_added_extension("gz")))
+    });
     if let Some(bytes) = text {
         return Some(String::from_utf8_lossy(&bytes).into_owned());
     }
@@ -35,6 +41,14 @@ pub fn open_data(file: &str, published: &str) -> Option<String> {
     assert!(std::env::var("CI").as_deref() != Ok("true"), "{message}");
     eprintln!("skipped: {message}");
     None
+}
+
+/// A file as it is behind gzip.
+fn unpacked(path: PathBuf) -> Option<Vec<u8>> {
+    let mut bytes = Vec::new();
+    let file = std::fs::File::open(path).ok()?;
+    flate2::read::GzDecoder::new(file).read_to_end(&mut bytes).ok()?;
+    Some(bytes)
 }
 
 /// Where TSPLIB is published (Reinelt, ORSA Journal on Computing 3 (1991) 376-384).

@@ -6,9 +6,11 @@ use std::path::Path;
 use std::rc::Rc;
 
 use instance::Instance;
-use model::Model;
+use model::{Model, nearest_f64};
 use serde_json::Value;
-use tree::{Progress, RootResult, Search, Settings, Summary};
+use tree::{Progress, RootResult, Search, Settings, Status, Summary};
+
+use crate::theory::{labels, table};
 
 /// Work in one slice: large, for nobody waits between slices here.
 const SLICE: u64 = 10_000_000;
@@ -103,6 +105,43 @@ pub fn values() -> Vec<Published> {
         source: text(value, "source"),
     };
     values.as_array().unwrap().iter().map(entry).collect()
+}
+
+/// Checks a bound against its stored value, and what is proved of it.
+///
+/// # Panics
+/// When they differ by more than the value's tolerance, or the bound is not proved.
+pub fn check_bound(value: &Published, model: &Rc<Model>) {
+    let root = root(model);
+    let name = format!("{} on {}", value.rival, value.instance);
+    assert_eq!(root.status, Status::Optimal, "{name}");
+    let bound = root.bound.unwrap();
+    let off = (bound - value.value).abs();
+    let near = off <= value.tolerance * (1.0 + bound.abs());
+    assert!(near, "{name}: {bound} for {} ({})", value.value, value.source);
+    let proved = nearest_f64(&root.checked_bound.unwrap());
+    let near = (proved - bound).abs() <= 1e-9 * (1.0 + bound.abs());
+    assert!(near, "{name}: proved {proved} of {bound}");
+}
+
+/// The same stops with another of them first: the depot, where the reader takes the first stop.
+///
+/// # Panics
+/// When the instance is no round trip or has no such stop.
+#[must_use]
+pub fn from_depot(trip: &Instance, depot: usize) -> Instance {
+    let mut stops = labels(trip, "V");
+    stops.rotate_left(depot);
+    let costs = table(trip, "c");
+    let mut text = format!("V\n{}\n\nr = {}\n", stops.join(" "), stops[0]);
+    for heading in ["A by i, j", "c by i, j"] {
+        text.push_str(&format!("\n{heading}\n"));
+        for (drive, cost) in costs.iter().filter(|(drive, _)| drive[0] != drive[1]) {
+            let number = if heading.starts_with('c') { format!(" {cost}") } else { String::new() };
+            text.push_str(&format!("{} {}{number}\n", drive[0], drive[1]));
+        }
+    }
+    instance(&text)
 }
 
 /// A TSPLIB instance by name, or `None` when the open data are not at hand.

@@ -103,6 +103,8 @@ pub(crate) struct Eliminator {
     /// Columns and rows without a pivot, by count.
     by_count: BTreeSet<(u32, u32)>,
     rows_by_count: BTreeSet<(u32, u32)>,
+    /// Rows and columns in which no entry is left to be a pivot.
+    empty: (Vec<u32>, Vec<u32>),
     pivots: Vec<Pivot>,
     work: u64,
 }
@@ -132,7 +134,8 @@ impl Eliminator {
         }
         let work = (2 * matrix.nonzeros() + size) as u64;
         let done = peel.row_done;
-        Self { rows, holders, counts, done, by_count, rows_by_count, pivots, work }
+        let empty = (Vec::new(), Vec::new());
+        Self { rows, holders, counts, done, by_count, rows_by_count, empty, pivots, work }
     }
 
     /// Entries touched so far.
@@ -145,9 +148,22 @@ impl Eliminator {
         if self.pivots.len() == self.rows.len() {
             return Elimination::Done;
         }
+        while let Some(&(0, column)) = self.by_count.first() {
+            self.by_count.pop_first();
+            self.empty.1.push(column);
+        }
+        while let Some(&(0, row)) = self.rows_by_count.first() {
+            self.rows_by_count.pop_first();
+            self.empty.0.push(row);
+        }
         let Some((row, column)) = self.choose() else { return Elimination::Singular };
         self.eliminate(row, column);
         Elimination::Working
+    }
+
+    /// When the matrix is singular: rows that depend on the others, and as many columns.
+    pub(crate) fn into_dependent(self) -> (Vec<u32>, Vec<u32>) {
+        self.empty
     }
 
     /// The factors of an elimination that is done.
@@ -156,12 +172,11 @@ impl Eliminator {
         Factor { pivots: self.pivots, nonzeros: entries }
     }
 
-    /// The pivot of least fill among the shortest columns and rows; `None` when one is empty.
+    /// The pivot of least fill among the shortest columns and rows; `None` when none is left.
     fn choose(&mut self) -> Option<(u32, u32)> {
         let (count, column) = *self.by_count.first()?;
         let (length, row) = *self.rows_by_count.first()?;
         match (count, length) {
-            (0, _) | (_, 0) => return None,
             (1, _) => return Some((self.holder(column)?, column)),
             (_, 1) => return Some((row, self.rows[row as usize].first()?.0)),
             _ => {}

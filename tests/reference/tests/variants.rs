@@ -1,0 +1,164 @@
+//! Relaxations of round trips that the catalogue does not ship, written in notation, against stored
+//! values: labels with a looser multiplier, lifted rows without lifted bounds, tight flow (Gavish &
+//! Graves 1978), products of labels and drives (Sherali & Driscoll, Operations Research 50 (2002)
+//! 656-669), the fractional 2-matching (Dantzig, Fulkerson & Johnson 1954). And shipped ones from
+//! every depot: the bound of a directed label depends on it. Values with their sources:
+//! `fixtures/round_trips.json`.
+
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
+
+use std::rc::Rc;
+
+use hullward_tests_reference::round_trip::{
+    check_bound, formulation, from_depot, root, tsplib, values,
+};
+use hullward_tests_reference::theory::labels;
+use instance::Instance;
+use model::Model;
+
+const LEAVE_AND_ENTER: &str = "
+data
+  V                                      stops
+  A ⊆ V × V                              drives
+  c_{i,j}  ∀ (i,j) ∈ A                   cost
+  r ∈ V                                  depot
+definitions
+  n = |V|
+minimise
+  Σ_{(i,j) ∈ A} c_{i,j} x_{i,j}
+subject to
+  Σ_{j : (i,j) ∈ A} x_{i,j} = 1                ∀ i ∈ V        (leave)
+  Σ_{i : (i,j) ∈ A} x_{i,j} = 1                ∀ j ∈ V        (enter)
+  0 ≤ x_{i,j} ≤ 1                              ∀ (i,j) ∈ A
+";
+
+const LOOSE_LABELS: &str = "
+  u_i − u_j + n x_{i,j} ≤ n − 1                ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (order)
+  1 ≤ u_i ≤ n − 1                              ∀ i ∈ V : i ≠ r
+";
+
+const LIFTED_ROWS: &str = "
+  u_i − u_j + (n−1) x_{i,j} + (n−3) x_{j,i} ≤ n − 2    ∀ (i,j) ∈ A : i ≠ r, j ≠ r   (order)
+  1 ≤ u_i ≤ n − 1                              ∀ i ∈ V : i ≠ r
+";
+
+const TIGHT_FLOW: &str = "
+  Σ_{j : (i,j) ∈ A} g_{i,j} − Σ_{j : (j,i) ∈ A} g_{j,i} = 1    ∀ i ∈ V : i ≠ r   (collect)
+  x_{i,j} ≤ g_{i,j}                            ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (least)
+  g_{i,j} ≤ (n−2) x_{i,j}                      ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (most)
+  g_{i,r} = (n−1) x_{i,r}                      ∀ i ∈ V : i ≠ r                 (home)
+  g_{r,j} = 0                                  ∀ j ∈ V : j ≠ r                 (empty)
+  g_{i,j} ≥ 0                                  ∀ (i,j) ∈ A
+";
+
+const PRODUCTS: &str = "
+  Σ_{j : (i,j) ∈ A, j ≠ r} y_{i,j} + (n−1) x_{i,r} = u_i      ∀ i ∈ V : i ≠ r     (from)
+  Σ_{i : (i,j) ∈ A, i ≠ r} y_{i,j} + 1 = u_j                  ∀ j ∈ V : j ≠ r     (to)
+  x_{i,j} ≤ y_{i,j}                            ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (least)
+  y_{i,j} ≤ (n−2) x_{i,j}                      ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (most)
+  u_j + (n−2) x_{i,j} − (n−1) + (n−1) x_{j,i} ≤ y_{i,j} + y_{j,i}
+      ∀ (i,j) ∈ A : i ≠ r, j ≠ r                                               (under)
+  y_{i,j} + y_{j,i} ≤ u_j − 1 + x_{j,i}        ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (over)
+  2 − x_{r,i} + (n−3) x_{i,r} ≤ u_i            ∀ i ∈ V : i ≠ r                 (earliest)
+  u_i ≤ n − 2 − (n−3) x_{r,i} + x_{i,r}        ∀ i ∈ V : i ≠ r                 (latest)
+  y_{i,j} ≥ 0                                  ∀ (i,j) ∈ A : i ≠ r, j ≠ r
+  1 ≤ u_i ≤ n − 1                              ∀ i ∈ V : i ≠ r
+";
+
+const TWO_MATCHING: &str = "
+data
+  V                                      stops
+  A ⊆ V × V                              drives
+  c_{i,j}  ∀ (i,j) ∈ A                   cost
+minimise
+  Σ_{(i,j) ∈ A : i < j} c_{i,j} x_{i,j}
+subject to
+  Σ_{j ∈ V : i < j} x_{i,j} + Σ_{j ∈ V : j < i} x_{j,i} = 2      ∀ i ∈ V      (degree)
+  0 ≤ x_{i,j} ≤ 1                              ∀ (i,j) ∈ A : i < j
+";
+
+fn model(variant: &str, instance: &Instance) -> Rc<Model> {
+    let rows = match variant {
+        "variant/two-matching" => return formulation(TWO_MATCHING, instance),
+        "variant/loose-labels" => LOOSE_LABELS,
+        "variant/lifted-rows" => LIFTED_ROWS,
+        "variant/tight-flow" => TIGHT_FLOW,
+        "variant/products" => PRODUCTS,
+        shipped => return formulation(catalogue::find(shipped).unwrap().text, instance),
+    };
+    formulation(&format!("{LEAVE_AND_ENTER}{rows}"), instance)
+}
+
+/// Every stored bound of a variant on instances of at most so many columns.
+fn bounds_agree(variant: &str, (columns, at_least): (usize, usize)) {
+    let mut seen = 0;
+    for value in values().iter().filter(|v| v.rival == variant && v.quantity == "LP bound") {
+        let Some(instance) = tsplib(&value.instance) else { return };
+        let model = model(variant, &instance);
+        if model.columns().len() > columns {
+            continue;
+        }
+        check_bound(value, &model);
+        seen += 1;
+    }
+    assert!(seen >= at_least, "{variant}: {seen} bounds");
+}
+
+#[test]
+fn labels_with_a_looser_multiplier() {
+    bounds_agree("variant/loose-labels", (10_000, 23));
+}
+
+#[test]
+fn lifted_rows_alone() {
+    bounds_agree("variant/lifted-rows", (10_000, 23));
+}
+
+#[test]
+fn tight_flow() {
+    bounds_agree("variant/tight-flow", (6_000, 17));
+}
+
+#[test]
+fn products_of_labels_and_drives() {
+    bounds_agree("variant/products", (2_500, 9));
+}
+
+#[test]
+fn fractional_two_matchings() {
+    bounds_agree("variant/two-matching", (10_000, 16));
+}
+
+/// The least and the largest bound over the choice of the depot.
+#[test]
+fn bounds_from_every_depot() {
+    let mut seen = 0;
+    for least in values().iter().filter(|v| v.quantity == "min over depots") {
+        let Some(trip) = tsplib(&least.instance) else { return };
+        if least.rival == "variant/products" && labels(&trip, "V").len() > 20 {
+            continue;
+        }
+        let same = |v: &&_| is_largest(v, (&least.rival, &least.instance));
+        let all = values();
+        let largest = all.iter().find(same).unwrap();
+        let bounds = (0..labels(&trip, "V").len())
+            .map(|depot| root(&model(&least.rival, &from_depot(&trip, depot))).bound.unwrap());
+        let (mut low, mut high) = (f64::INFINITY, f64::NEG_INFINITY);
+        for bound in bounds {
+            low = if bound < low { bound } else { low };
+            high = if bound > high { bound } else { high };
+        }
+        let name = format!("{} on {}: {low} to {high}", least.rival, least.instance);
+        let near = |found: f64, value: f64| (found - value).abs() <= 1e-6 * (1.0 + value.abs());
+        assert!(near(low, least.value) && near(high, largest.value), "{name}");
+        seen += 1;
+    }
+    assert_eq!(seen, 15);
+}
+
+fn is_largest(
+    value: &hullward_tests_reference::round_trip::Published,
+    (rival, instance): (&str, &str),
+) -> bool {
+    value.quantity == "max over depots" && value.rival == rival && value.instance == instance
+}

@@ -34,7 +34,7 @@ fn value(model: &Rc<Model>, whole: bool) -> f64 {
 #[test]
 fn sites_have_their_bounds() {
     for (file, joined, split) in [
-        ("cap71", 844_807.5875, 932_615.75),
+        ("cap71", 844_807.587_5, 932_615.75),
         ("cap74", 859_463.45, 1_034_976.975),
         ("cap101", 659_341.15, 796_648.437_5),
         ("cap134", 648_426.3, 928_941.75),
@@ -64,9 +64,9 @@ fn knapsacks_of_several_rows_have_bound_and_optimum() {
     let text = "Several rows\ndata\n I  rows\n J  items\n p_j ∀ j ∈ J\n a_{i,j} ∀ i ∈ I, j ∈ J\n b_i ∀ i ∈ I\n\
         maximise\n Σ_{j ∈ J} p_j x_j\nsubject to\n Σ_{j ∈ J} a_{i,j} x_j ≤ b_i ∀ i ∈ I (fit)\n x_j ∈ {0,1} ∀ j ∈ J\n";
     for (at, bound, best) in [
-        (1, 4134.074_074_074, 3800.0),
-        (2, 9297.712_466_844, 8706.1),
-        (4, 6155.333_333_333, 6120.0),
+        (1, 4_134.074_074_074, 3800.0),
+        (2, 9_297.712_466_844, 8706.1),
+        (4, 6_155.333_333_333, 6120.0),
         (7, 16_612.821_234_12, 16_537.0),
     ] {
         let Some(instance) = part("mknap/mknap1.txt", OR_LIBRARY, at) else { return };

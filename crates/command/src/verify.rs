@@ -44,6 +44,7 @@ mod tests {
             checked: false,
             stopped: None,
             node_work: record::results::NodeWorkReport::default(),
+            cuts: None,
         };
         RivalResult { search: Some(search), maximise, ..RivalResult::default() }
     }

@@ -201,6 +201,31 @@ pub struct SearchReport {
     /// What node work did.
     #[serde(default)]
     pub node_work: NodeWorkReport,
+    /// What general cuts gave at the root, where some were asked for.
+    #[serde(default)]
+    pub cuts: Option<CutsReport>,
+}
+
+/// What general cuts gave at the root.
+#[derive(Debug, Clone, Copy, PartialEq, Serialize, Deserialize)]
+pub struct CutsReport {
+    /// The bound of the relaxation with them.
+    pub bound: Option<f64>,
+    /// Rounds that added some.
+    pub rounds: u32,
+    /// How many of each class were added.
+    pub added: CutsAdded,
+}
+
+/// Cuts by class.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
+pub struct CutsAdded {
+    /// Gomory's mixed-integer cuts.
+    pub gomory: u32,
+    /// Complemented mixed-integer rounding.
+    pub mir: u32,
+    /// Lifted covers.
+    pub cover: u32,
 }
 
 /// What node work did; all 0 where none was asked for.

@@ -181,6 +181,7 @@ mod tests {
             checked: false,
             stopped: None,
             node_work: NodeWorkReport::default(),
+            cuts: None,
         };
         let text = search(&vain).unwrap();
         assert!(

@@ -17,6 +17,7 @@
 //! | item | use it for |
 //! |---|---|
 //! | [`Separator`] | one family over subsets: violated members at a point, membership |
+//! | [`general`] | cuts that no family has: Gomory, mixed-integer rounding, lifted covers |
 //! | [`RowSeparator`] | an ordinary family on demand: violated written rows |
 
 mod clique;
@@ -27,6 +28,7 @@ mod cover;
 mod cut_tree;
 mod degree;
 mod flow;
+pub mod general;
 mod growth;
 mod list;
 mod member;

@@ -171,6 +171,9 @@ impl Search {
 
     /// The node in hand has no point, as `ray` says.
     pub(crate) fn infeasible(&mut self, ray: &[f64]) -> Option<Progress> {
+        if self.hand.as_ref()?.cutting {
+            return self.cut_off(ray);
+        }
         let refuted = self.hand.as_ref()?.exact;
         let checked = refuted || self.relaxation.as_ref()?.refutes(ray);
         if !checked && self.refute_root(ray) {
@@ -198,6 +201,9 @@ impl Search {
 
     /// The node in hand cannot be solved: its parent's bound stands.
     pub(crate) fn unsolved(&mut self, why: &str) -> Option<Progress> {
+        if self.hand.as_ref()?.cutting {
+            return self.finish_cuts();
+        }
         if self.hand.as_ref()?.node == NodeId::ROOT {
             return self.root_stopped(why.to_owned());
         }

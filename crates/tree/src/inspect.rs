@@ -151,7 +151,7 @@ impl Search {
         let origins = self.relaxation.as_ref()?.origins().iter().zip(ray);
         let rows = origins.filter(|&(_, &y)| y != 0.0).map(|(origin, &y)| match origin {
             RowOrigin::Written(row) => Some((*row, y)),
-            RowOrigin::Member { .. } => None,
+            RowOrigin::Member { .. } | RowOrigin::Cut(..) => None,
         });
         cycle::of_rows(&self.model, &rows.collect::<Option<Vec<_>>>()?)
     }
@@ -209,6 +209,9 @@ impl Search {
     fn row_name(&self, origin: &RowOrigin) -> String {
         match origin {
             RowOrigin::Written(row) => self.model.row_name(*row),
+            RowOrigin::Cut(class, number) => {
+                format!("{} cut {}", crate::cutting::class_name(*class), number + 1)
+            }
             RowOrigin::Member { family, subset } => {
                 let of = self.model.subset_family(*family);
                 let name = |label: &LabelId| self.model.labels().name(*label).to_owned();

@@ -49,6 +49,10 @@
 //! costs are each checked in exact arithmetic before they are used, so that no proof rests on them
 //! unchecked.
 //!
+//! **General cuts** are added at the root, in rounds, where [`Cuts`] asks for them, after its relaxation
+//! is reported as it is meant. Each is derived in exact arithmetic from the exact rows, and a
+//! solution that breaks one ends the search with an error.
+//!
 //! **What is trusted.** A node is closed by floating-point arithmetic with the tolerances that
 //! each file names; each leaf is then checked in exact arithmetic and counted as checked or not.
 //! An LP point is a solution only after an exact check of every row and family. A node that
@@ -59,6 +63,8 @@ mod acts;
 mod allowed;
 mod branching;
 mod conflict;
+mod cut_round;
+mod cutting;
 mod cycle;
 mod decide;
 mod direction;
@@ -88,12 +94,13 @@ mod work;
 
 pub use acts::{Act, Acted, Refusal};
 pub use conflict::{Certainty, Conflict, ConflictLimits, ConflictResult};
+pub use cutting::CutsResult;
 pub use cycle::Cycle;
 pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
 pub use inspect::{NodeView, ViolatedSubset};
 pub use root::{RootResult, Status};
 pub use search::{Progress, Search, Work};
-pub use settings::{Branching, NodeWork, Selection, Settings};
+pub use settings::{Branching, Cuts, NodeWork, Selection, Settings};
 pub use summary::{NodeWorkCounts, Summary};
 
 #[cfg(test)]

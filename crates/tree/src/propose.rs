@@ -6,7 +6,7 @@ use model::ColumnId;
 
 use crate::event::{Event, NodeId};
 use crate::relaxation::{Addition, RowOrigin, direction};
-use crate::search::{Incumbent, Job, Progress, Purpose, Search};
+use crate::search::{Ending, Incumbent, Job, Progress, Purpose, Search};
 use crate::solution::{Completed, Solution, Verdict};
 use crate::target::signed;
 
@@ -173,7 +173,7 @@ impl Search {
 
     /// Takes a solution as the incumbent if it is the best, and closes the open nodes that
     /// cannot be better. Gives its internal value.
-    fn accept(&mut self, solution: Solution, purpose: Purpose) -> f64 {
+    pub(crate) fn accept(&mut self, solution: Solution, purpose: Purpose) -> f64 {
         let exact = signed(&self.model, solution.value.clone());
         let internal = model::nearest_f64(&exact);
         let better = match self.incumbent {
@@ -181,6 +181,11 @@ impl Search {
             None => wanted(internal, self.target.best(), false),
         };
         if !better {
+            return internal;
+        }
+        if self.breaks_a_cut(&solution) {
+            let why = "internal error: a solution breaks a general cut";
+            self.end(Ending::Stopped(why.to_owned()));
             return internal;
         }
         let value = self.user(internal);

@@ -14,6 +14,7 @@ use model::{
     ColumnId, FamilyState, LabelId, Model, Number, Row, RowId, Sense, SubsetFamilyId, nearest_f64,
 };
 use proof::{Budget, ExactRows, Residual, Wish};
+use separate::general::{Class, GeneralCut};
 
 use crate::event::{Branch, Side};
 use crate::proving::Proving;
@@ -30,6 +31,8 @@ pub(crate) enum RowOrigin {
         /// The subset.
         subset: BTreeSet<LabelId>,
     },
+    /// A general cut, by its class and its number among all of them.
+    Cut(Class, usize),
 }
 
 /// A row to be added.
@@ -48,6 +51,7 @@ pub(crate) struct Relaxation {
     origins: Vec<RowOrigin>,
     added: Vec<NewRow>,
     written: Vec<bool>,
+    cuts: Vec<Row>,
     members: BTreeSet<(SubsetFamilyId, BTreeSet<LabelId>)>,
     exact: ExactRows,
     bounds: Vec<proof::Bounds>,
@@ -75,6 +79,7 @@ impl Relaxation {
             origins,
             added: Vec::new(),
             written,
+            cuts: Vec::new(),
             members: BTreeSet::new(),
             exact: ExactRows::new(model),
             bounds,
@@ -127,7 +132,7 @@ impl Relaxation {
             if !self.note(&origin) {
                 continue;
             }
-            families.push(self.family(&origin));
+            families.extend(self.family(&origin));
             self.exact.add(&row);
             rows.push(float_row(&row));
             self.origins.push(origin);
@@ -144,13 +149,45 @@ impl Relaxation {
         match origin {
             RowOrigin::Written(row) => !std::mem::replace(&mut self.written[row.index()], true),
             RowOrigin::Member { family, subset } => self.members.insert((*family, subset.clone())),
+            RowOrigin::Cut(..) => true,
         }
     }
 
-    fn family(&self, origin: &RowOrigin) -> model::FamilyId {
+    fn family(&self, origin: &RowOrigin) -> Option<model::FamilyId> {
         match origin {
-            RowOrigin::Written(row) => self.model.row_family(*row),
-            RowOrigin::Member { family, .. } => self.model.subset_family(*family).family,
+            RowOrigin::Written(row) => Some(self.model.row_family(*row)),
+            RowOrigin::Member { family, .. } => Some(self.model.subset_family(*family).family),
+            RowOrigin::Cut(..) => None,
+        }
+    }
+
+    /// Adds general cuts.
+    ///
+    /// # Errors
+    /// Where the kernel refuses them.
+    pub(crate) fn add_cuts(&mut self, cuts: Vec<GeneralCut>) -> Result<(), ProblemError> {
+        let mut additions = Vec::new();
+        for GeneralCut { class, row, .. } in cuts {
+            let origin = RowOrigin::Cut(class, self.cuts.len());
+            additions.push(Addition { origin, row: row.clone() });
+            self.cuts.push(row);
+        }
+        self.add(additions).map(|_| ())
+    }
+
+    /// The general cuts added so far.
+    pub(crate) fn cuts(&self) -> &[Row] {
+        &self.cuts
+    }
+
+    /// A row of the relaxation in exact numbers.
+    pub(crate) fn exact_row(&self, index: usize) -> Option<Row> {
+        match self.origins.get(index)? {
+            RowOrigin::Written(row) => Some(self.model.row(*row)),
+            RowOrigin::Member { family, subset } => {
+                Some(self.model.subset_family(*family).member(subset))
+            }
+            RowOrigin::Cut(_, number) => self.cuts.get(*number).cloned(),
         }
     }
 

@@ -4,6 +4,7 @@ use lp::{NewRow, Outcome};
 use model::Number;
 
 use crate::branching::Choice;
+use crate::cutting::Cutting;
 use crate::event::{NodeId, NodeState};
 use crate::relaxation::direction;
 use crate::search::{Ending, Hand, Progress, Search, State};
@@ -194,7 +195,9 @@ impl Search {
     /// Leaves the root: branches or holds it, or drops it where a heuristic has closed it.
     pub(crate) fn open_root(&mut self) {
         let Some(choice) = self.plan.take() else { return };
-        let bound = self.tree.node(NodeId::ROOT).bound;
+        let own = self.tree.node(NodeId::ROOT).bound;
+        let cut = self.cutting.as_mut().and_then(Cutting::take_point);
+        let bound = cut.as_ref().map_or(own, |cut| if cut.0 > own { cut.0 } else { own });
         if self.target.closes(bound) {
             self.drop_node(NodeId::ROOT);
         } else if self.is_to_be_held(NodeId::ROOT) {
@@ -202,6 +205,7 @@ impl Search {
             self.hold(NodeId::ROOT, bound, x);
         } else {
             let x = self.root.as_ref().map(|root| root.x.clone()).unwrap_or_default();
+            let x = cut.map_or(x, |(_, x)| x);
             self.branch(NodeId::ROOT, bound, &choice, &x);
         }
         self.announce();

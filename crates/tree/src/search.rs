@@ -11,6 +11,8 @@ use separate::Separator;
 
 use crate::acts::Acts;
 use crate::branching::{Choice, Chooser};
+use crate::cut_round::CutRound;
+use crate::cutting::Cutting;
 use crate::event::{Event, NodeId, Origin};
 use crate::hold::Holding;
 use crate::node::Tree;
@@ -83,6 +85,7 @@ pub(crate) enum Job {
     Complete(Purpose),
     Tour(Box<TourSearch>),
     Probe(Box<Probing>),
+    Cut(Box<CutRound>),
     Prove(Box<Proving>, Proof),
 }
 
@@ -109,6 +112,7 @@ impl Purpose {
 pub(crate) enum Opening {
     Tour,
     Rounding,
+    Cuts,
     Branch,
     Done,
 }
@@ -139,6 +143,8 @@ pub(crate) struct Hand {
     pub(crate) exact: bool,
     /// Whether a proof from its basis was tried.
     pub(crate) tried: bool,
+    /// Whether it is the root once more, for general cuts.
+    pub(crate) cutting: bool,
     /// Whether columns were tried for branching, and the best of them.
     pub(crate) probed: bool,
     pub(crate) probed_choice: Option<Choice>,
@@ -157,6 +163,7 @@ impl Hand {
             proved: None,
             exact: false,
             tried: false,
+            cutting: false,
             probed: false,
             probed_choice: None,
         }
@@ -205,6 +212,7 @@ pub struct Search {
     pub(crate) trip: Option<Rc<RoundTrip>>,
     pub(crate) tree: Tree,
     pub(crate) propagator: Option<Propagator>,
+    pub(crate) cutting: Option<Cutting>,
     pub(crate) open: Open,
     pub(crate) target: Target,
     pub(crate) incumbent: Option<Incumbent>,
@@ -240,6 +248,7 @@ impl Search {
             chooser: Chooser::new(&model, &settings.priority),
             trip: RoundTrip::find(&model).map(Rc::new),
             tree: Tree::new(),
+            cutting: (!settings.cuts.is_empty()).then(|| Cutting::new(&model)),
             propagator: settings.node_work.propagation.then(|| Propagator::new(&model)),
             open: Open::default(),
             target,
@@ -375,6 +384,7 @@ impl Search {
             (Job::Separate, _) => "separating",
             (Job::Complete(_), _) => "completing a solution",
             (Job::Tour(_), _) => "looking for a round trip",
+            (Job::Cut(_), _) => "looking for general cuts",
             (Job::Probe(_), _) => "trying branchings",
             (Job::Prove(..), _) => "proving a bound",
             (Job::None, _) => "choosing",

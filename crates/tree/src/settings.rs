@@ -56,6 +56,25 @@ impl Default for NodeWork {
     }
 }
 
+/// Which classes of general cuts are added at the root, after its relaxation is solved.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub struct Cuts {
+    /// Gomory's mixed-integer cuts.
+    pub gomory: bool,
+    /// Complemented mixed-integer rounding.
+    pub mir: bool,
+    /// Lifted covers.
+    pub cover: bool,
+}
+
+impl Cuts {
+    /// Whether none is wanted.
+    #[must_use]
+    pub fn is_empty(self) -> bool {
+        self == Self::default()
+    }
+}
+
 /// Rules and limits. A limit that is `None` does not hold.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Settings {
@@ -68,6 +87,8 @@ pub struct Settings {
     pub priority: Vec<String>,
     /// What is done at a node beside its relaxation.
     pub node_work: NodeWork,
+    /// General cuts at the root.
+    pub cuts: Cuts,
     /// A value of the objective known to be reachable: nodes that cannot be better are
     /// closed, and solutions that are worse are not taken.
     pub cutoff: Option<f64>,
@@ -89,6 +110,7 @@ impl Default for Settings {
             selection: Selection::default(),
             priority: Vec::new(),
             node_work: NodeWork::default(),
+            cuts: Cuts::default(),
             cutoff: None,
             node_limit: None,
             iteration_limit: None,

@@ -3,6 +3,7 @@
 
 use lp::{Limits, Outcome, Progress as LpProgress, StopReason};
 
+use crate::cutting::Cutting;
 use crate::event::NodeId;
 use crate::relaxation::Addition;
 use crate::search::{Ending, Hand, Job, Opening, PointInHand, Progress, Search, State};
@@ -44,6 +45,7 @@ impl Search {
                 self.completed(purpose, point)
             }
             Job::Probe(_) => self.probe(ticks),
+            Job::Cut(_) => self.advance_cuts(),
             Job::Tour(tour) => {
                 if tour.advance(ticks) {
                     self.toured();
@@ -79,9 +81,13 @@ impl Search {
                 None
             }
             Opening::Rounding => {
-                self.opening = Opening::Branch;
+                self.opening = Opening::Cuts;
                 let x = self.root.as_ref().map(|root| root.x.clone())?;
                 self.round(&x)
+            }
+            Opening::Cuts => {
+                self.opening = Opening::Branch;
+                self.begin_cuts()
             }
             Opening::Branch => {
                 self.opening = Opening::Done;
@@ -136,13 +142,15 @@ impl Search {
         let path = self.tree.path(node);
         let parent = self.tree.node(node).parent();
         relaxation.enter(&path);
-        relaxation.load(parent.and_then(|parent| self.tree.node(parent).basis.as_deref()));
+        let own = parent.and_then(|parent| self.tree.node(parent).basis.as_deref());
+        let cut = self.cutting.as_ref().and_then(Cutting::basis);
+        relaxation.load(cut.filter(|_| parent == Some(NodeId::ROOT)).or(own));
         self.hand = Some(Hand::new(node, relaxation.simplex.stats().iterations));
         self.solve()
     }
 
     /// Starts the LP in hand with the iterations that are left.
-    fn solve(&mut self) -> Option<Progress> {
+    pub(crate) fn solve(&mut self) -> Option<Progress> {
         let spent = self.work().iterations;
         let left = self.settings.iteration_limit.map(|limit| limit.saturating_sub(spent));
         if left == Some(0) {
@@ -241,6 +249,9 @@ impl Search {
     /// Nothing is violated any more (or the round limit is reached): look for solutions.
     fn converged(&mut self) -> Option<Progress> {
         let hand = self.hand.as_ref()?;
+        if hand.cutting {
+            return self.cut_round();
+        }
         let root = hand.node == NodeId::ROOT;
         let point = hand.point.as_ref()?;
         let whole = self.chooser.fractional(&point.x) == 0;
@@ -275,7 +286,8 @@ impl Search {
     }
 
     fn out_of_iterations(&mut self) -> Option<Progress> {
-        if self.hand.as_ref()?.node == NodeId::ROOT {
+        let hand = self.hand.as_ref()?;
+        if hand.node == NodeId::ROOT && !hand.cutting {
             return self.root_stopped("iteration limit".to_owned());
         }
         self.end(Ending::Stopped("iteration limit".to_owned()));

@@ -183,6 +183,7 @@ mod tests {
             checked: true,
             stopped: Some("node limit".to_owned()),
             node_work: record::results::NodeWorkReport::default(),
+            cuts: None,
         }
     }
 

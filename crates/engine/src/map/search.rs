@@ -2,7 +2,8 @@
 
 use model::{ColumnId, Model};
 use record::results::{
-    ConflictLevel, ConflictReport, NodeWorkReport, SearchReport, SolutionEntry, Status, WAITS,
+    ConflictLevel, ConflictReport, CutsAdded, CutsReport, NodeWorkReport, SearchReport,
+    SolutionEntry, Status, WAITS,
 };
 
 use super::{finite, status, tidy};
@@ -32,6 +33,16 @@ pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchRepor
             tightened: summary.node_work.tightened,
             fixed: summary.node_work.fixed,
         },
+        cuts: search.cuts().map(cuts_report),
+    }
+}
+
+fn cuts_report(cuts: tree::CutsResult) -> CutsReport {
+    let [gomory, mir, cover] = cuts.added;
+    CutsReport {
+        bound: cuts.bound.and_then(finite),
+        rounds: cuts.rounds,
+        added: CutsAdded { gomory, mir, cover },
     }
 }
 
@@ -55,6 +66,7 @@ pub(crate) fn nothing_searched(why: &str) -> SearchReport {
         checked: false,
         stopped: Some(why.to_owned()),
         node_work: NodeWorkReport::default(),
+        cuts: None,
     }
 }
 

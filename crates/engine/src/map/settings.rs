@@ -20,6 +20,7 @@ pub(crate) fn settings(run: &Run, seed: u64) -> tree::Settings {
         },
         priority: run.priority.clone(),
         node_work: node_work(run),
+        cuts: cuts(run),
         cutoff: run.best_known,
         node_limit: (run.nodes > 0).then_some(run.nodes),
         iteration_limit: (run.iterations > 0).then_some(run.iterations),
@@ -37,4 +38,10 @@ fn node_work(run: &Run) -> tree::NodeWork {
         fixing: has("reduced costs"),
         lattice: has("objective step"),
     }
+}
+
+/// General cuts: those classes of the scenario that this version has.
+fn cuts(run: &Run) -> tree::Cuts {
+    let has = |wanted: &str| run.cuts.iter().flatten().any(|class| class == wanted);
+    tree::Cuts { gomory: has("gomory"), mir: has("mir"), cover: has("cover") }
 }

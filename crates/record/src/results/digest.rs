@@ -136,6 +136,7 @@ mod tests {
             checked: true,
             stopped: stopped.map(str::to_owned),
             node_work: NodeWorkReport::default(),
+            cuts: None,
         }
     }
 

@@ -3,6 +3,7 @@
 mod acts;
 mod by_hand;
 mod conflict;
+mod cuts;
 mod cycles;
 mod endings;
 mod enumeration;

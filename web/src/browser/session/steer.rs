@@ -127,6 +127,7 @@ mod tests {
                 checked: false,
                 stopped: Some(stopped.to_owned()),
                 node_work: record::results::NodeWorkReport::default(),
+                cuts: None,
             }))
         };
         let mut lane = lane();

@@ -1,0 +1,182 @@
+//! Mixed-integer rounding. With all columns moved to a bound and slacks y,
+//!
+//! ```text
+//! Σ a x + Σ c y = b,  x ≥ 0 whole, y ≥ 0   ⇒   Σ F(a) x + Σ_{c<0} c/(1−f) y ≤ ⌊b⌋,
+//! F(a) = ⌊a⌋ + max(0, frac a − f)/(1 − f),  f = frac b
+//! ```
+//!
+//! (Nemhauser, Wolsey 1990). Slacks are then put back as what they stand for.
+
+use std::collections::{BTreeMap, BTreeSet};
+
+use model::{ColumnId, Number, Row, nearest_f64};
+
+use super::aggregate::{Aggregate, Frame};
+use super::shorten::shortened;
+use super::{Class, GeneralCut};
+
+/// The least and the largest fraction of the right side that is rounded.
+const FRACTIONS: (f64, f64) = (0.02, 0.98);
+/// Divisors that are tried for one sum.
+const MOST_DIVISORS: usize = 6;
+/// The least efficacy of a cut.
+pub(super) const LEAST: f64 = 1e-4;
+
+/// The cut of a sum that is divided by `divisor`, with each column moved to its nearer bound but
+/// those in `flips`; if `x` violates it.
+pub(super) fn rounded(
+    sum: &Aggregate,
+    frame: &Frame,
+    x: &[f64],
+    (divisor, flips): (&Number, &BTreeSet<ColumnId>),
+) -> Option<Row> {
+    let mut right = &sum.right / divisor;
+    let mut moved = Vec::new();
+    for (&column, a) in &sum.coefficients {
+        let upper = at_upper(frame, column, x)? != flips.contains(&column);
+        let (lower_bound, upper_bound) = &frame.bounds[column.index()];
+        let bound = if upper { upper_bound } else { lower_bound }.as_ref()?;
+        let a = a / divisor;
+        right -= &a * bound;
+        moved.push((column, if upper { -a } else { a }, upper, bound));
+    }
+    let floor = Number::from(right.floor());
+    let f = &right - &floor;
+    let near = nearest_f64(&f);
+    if near < FRACTIONS.0 || near > FRACTIONS.1 {
+        return None;
+    }
+    let rest = Number::ONE - &f;
+    let factor = |a: &Number, whole: bool| round_coefficient(a, whole, &f, &rest);
+    let mut entries: BTreeMap<ColumnId, Number> = BTreeMap::new();
+    let mut side = floor;
+    for (column, a, upper, bound) in moved {
+        let g = factor(&a, frame.integer[column.index()]);
+        let g = if upper { -g } else { g };
+        side += &g * bound;
+        *entries.entry(column).or_default() += g;
+    }
+    for slack in &sum.slacks {
+        let g = factor(&(&slack.coefficient / divisor), slack.whole);
+        side -= &g * &slack.side;
+        for (column, a) in &slack.entries {
+            *entries.entry(*column).or_default() -= &g * a;
+        }
+    }
+    let entries = entries.into_iter().filter(|(_, a)| !a.is_zero()).collect();
+    Some(Row { entries, lower: None, upper: Some(side) })
+}
+
+/// The coefficient that the rounding gives.
+fn round_coefficient(a: &Number, whole: bool, f: &Number, rest: &Number) -> Number {
+    if !whole {
+        return if *a < Number::ZERO { a / rest } else { Number::ZERO };
+    }
+    let floor = Number::from(a.floor());
+    let over = a - &floor - f;
+    if over > Number::ZERO { floor + over / rest } else { floor }
+}
+
+/// Whether a column is nearer to its upper bound; `None` where it has no bound.
+fn at_upper(frame: &Frame, column: ColumnId, x: &[f64]) -> Option<bool> {
+    let value = x[column.index()];
+    match &frame.bounds[column.index()] {
+        (None, None) => None,
+        (Some(_), None) => Some(false),
+        (None, Some(_)) => Some(true),
+        (Some(lower), Some(upper)) => Some(nearest_f64(upper) - value < value - nearest_f64(lower)),
+    }
+}
+
+/// The best cut of a sum, over divisors and complements (Marchand, Wolsey 2001): whole columns
+/// between their bounds give the divisors, the best of these is halved up to three times, and then
+/// such columns are moved to their other bound while that makes the cut better.
+#[must_use]
+pub fn complemented(sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
+    let between = |column: &ColumnId| {
+        let (lower, upper) = &frame.bounds[column.index()];
+        let value = x[column.index()];
+        let inside = |bound: &Option<Number>, sign: f64| {
+            bound.as_ref().is_none_or(|b| sign * (value - nearest_f64(b)) > 1e-6)
+        };
+        frame.integer[column.index()] && inside(lower, 1.0) && inside(upper, -1.0)
+    };
+    let inner: Vec<ColumnId> = sum.coefficients.keys().copied().filter(between).collect();
+    let size = |a: &Number| if *a < Number::ZERO { -a.clone() } else { a.clone() };
+    let mut divisors: BTreeSet<Number> =
+        inner.iter().filter_map(|c| sum.coefficients.get(c)).map(size).collect();
+    divisors.insert(Number::ONE);
+    let mut best = Best { sum, frame, x, found: None };
+    let none = BTreeSet::new();
+    for divisor in divisors.into_iter().rev().take(MOST_DIVISORS) {
+        best.attempt(divisor, &none);
+    }
+    let (_, mut divisor, _) = best.found.clone()?;
+    for _ in 0..3 {
+        divisor /= Number::from(2);
+        best.attempt(divisor.clone(), &none);
+    }
+    let divisor = best.found.as_ref()?.1.clone();
+    let mut flips = BTreeSet::new();
+    for &column in &inner {
+        flips.insert(column);
+        if !best.attempt(divisor.clone(), &flips) {
+            flips.remove(&column);
+        }
+    }
+    let (_, _, row) = best.found?;
+    let row = shortened(&row, frame)?;
+    let efficacy = efficacy(&row, x);
+    (efficacy > LEAST).then_some(GeneralCut { class: Class::Mir, row, efficacy })
+}
+
+/// Gomory's mixed-integer cut of a sum that is a row of the tableau, in the better of its two
+/// directions.
+#[must_use]
+pub fn from_tableau(sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
+    let none = BTreeSet::new();
+    let cut = |sum: &Aggregate| {
+        let row = rounded(sum, frame, x, (&Number::ONE, &none))?;
+        let row = shortened(&row, frame)?;
+        let efficacy = efficacy(&row, x);
+        (efficacy > LEAST).then_some(GeneralCut { class: Class::Gomory, row, efficacy })
+    };
+    match (cut(sum), cut(&sum.turned())) {
+        (Some(a), Some(b)) => Some(if b.efficacy > a.efficacy { b } else { a }),
+        (a, b) => a.or(b),
+    }
+}
+
+/// The best cut so far: its efficacy, its divisor and its row.
+struct Best<'a> {
+    sum: &'a Aggregate,
+    frame: &'a Frame,
+    x: &'a [f64],
+    found: Option<(f64, Number, Row)>,
+}
+
+impl Best<'_> {
+    /// Tries a divisor and complements; whether that is better.
+    fn attempt(&mut self, divisor: Number, flips: &BTreeSet<ColumnId>) -> bool {
+        let Some(row) = rounded(self.sum, self.frame, self.x, (&divisor, flips)) else {
+            return false;
+        };
+        let efficacy = efficacy(&row, self.x);
+        let better = self.found.as_ref().is_none_or(|(most, ..)| efficacy > *most + 1e-9);
+        if better && efficacy > LEAST {
+            self.found = Some((efficacy, divisor, row));
+            return true;
+        }
+        false
+    }
+}
+
+/// How far a point is beyond a row `Σ a x ≤ b`.
+pub(super) fn efficacy(row: &Row, x: &[f64]) -> f64 {
+    let length = row.entries.iter().fold(0.0, |sum, (_, a)| {
+        let a = nearest_f64(a);
+        sum + a * a
+    });
+    let side = row.upper.as_ref().map_or(f64::INFINITY, nearest_f64);
+    if length > 0.0 { (row.activity(x) - side) / length.sqrt() } else { 0.0 }
+}

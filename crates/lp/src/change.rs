@@ -7,7 +7,7 @@ use crate::state::{Core, settled};
 impl Core {
     /// Appends rows; their logicals are basic.
     pub(crate) fn append_rows(&mut self, rows: &[CleanRow]) {
-        self.unscale();
+        let before = self.unscale();
         self.matrix.append(rows.iter().map(|row| row.entries.as_slice()));
         for row in rows {
             self.cost.push(0.0);
@@ -15,14 +15,14 @@ impl Core {
             self.upper.push(row.upper);
             self.status.push(Status::Basic);
         }
-        self.scale();
+        self.scale(&before);
         self.restore_given();
         self.sort_head();
     }
 
     /// Keeps the rows marked true; the logicals of the others are basic.
     pub(crate) fn retain_rows(&mut self, keep: &[bool]) {
-        self.unscale();
+        let mut before = self.unscale();
         let n = self.columns();
         let kept = |j: usize| j < n || keep[j - n];
         let mut place = vec![0u32; self.variables()];
@@ -36,7 +36,7 @@ impl Core {
             held.map(|(&j, &weight)| (place[j as usize], weight)).unzip();
         self.head = head;
         self.weight = weight;
-        for list in [&mut self.cost, &mut self.lower, &mut self.upper] {
+        for list in [&mut self.cost, &mut self.lower, &mut self.upper, &mut before] {
             let mut j = 0;
             list.retain(|_| {
                 j += 1;
@@ -49,8 +49,7 @@ impl Core {
             kept(j - 1)
         });
         self.matrix.retain(keep);
-        self.unit.clear();
-        self.scale();
+        self.scale(&before);
         self.restore_given();
         self.sort_head();
     }

@@ -114,7 +114,8 @@ impl Core {
         self.price();
     }
 
-    /// ρ[A, −I] into `scratch.row`, row by row of A, without basic and fixed variables.
+    /// ρ[A, −I] into `scratch.row`, row by row of A, without basic and fixed variables. When more
+    /// entries are added than there are columns, the places are listed afterwards, in order.
     fn price(&mut self) {
         if !self.partition.is_current {
             let (status, lower, upper) = (&self.status, &self.work_lower, &self.work_upper);
@@ -125,18 +126,28 @@ impl Core {
         let n = self.columns();
         let row = &mut self.scratch.row;
         row.clear();
+        let mut entries = 0;
         for (i, multiplier) in self.scratch.rho.iter() {
+            entries += self.partition.row(i).0.len();
             let logical = n + i as usize;
             if self.status[logical] != Status::Basic
                 && self.work_lower[logical] != self.work_upper[logical]
             {
                 row.add(logical as u32, -multiplier);
             }
+        }
+        self.ticks += (entries + self.scratch.rho.count()) as u64;
+        let is_dense = entries > n;
+        for (i, multiplier) in self.scratch.rho.iter() {
             let (columns, values) = self.partition.row(i);
-            self.ticks += columns.len() as u64 + 1;
-            for (&j, &value) in columns.iter().zip(values) {
-                row.add(j, multiplier * value);
+            if is_dense {
+                row.add_unlisted(columns, values, multiplier);
+            } else {
+                columns.iter().zip(values).for_each(|(&j, &value)| row.add(j, multiplier * value));
             }
+        }
+        if is_dense {
+            row.list_below(n as u32);
         }
     }
 

@@ -130,7 +130,7 @@ impl Core {
             refactors: 0,
         };
         core.status.resize(n + m, Status::Basic);
-        core.scale();
+        core.scale(&[]);
         core.restore_given();
         core.settle_statuses();
         core.sort_head();

@@ -44,11 +44,14 @@ pub(crate) struct DualState {
     pub(crate) perturbed: bool,
     /// False when perturbation is not allowed.
     pub(crate) may_perturb: bool,
+    /// True when costs are to be perturbed without waiting for a stall.
+    pub(crate) will_stall: bool,
     /// The dual objective's gain since the method began (working costs).
     pub(crate) gain: f64,
 }
 
-/// Makes the start dual feasible by shifting the working costs of wrong-signed columns.
+/// Makes the start dual feasible by shifting the working costs of wrong-signed columns, and sees
+/// whether it must stall.
 pub(crate) fn begin(core: &mut Core, state: &mut DualState) {
     for j in 0..core.variables() {
         core.shift_if_wrong(j);
@@ -56,6 +59,7 @@ pub(crate) fn begin(core: &mut Core, state: &mut DualState) {
     state.aside.clear();
     state.stall = 0;
     state.gain = 0.0;
+    state.will_stall = perturb::will_stall(core);
 }
 
 /// One step.
@@ -71,7 +75,7 @@ pub(crate) fn step(core: &mut Core, state: &mut DualState) -> DualStep {
     if core.mend_weight(position) {
         return DualStep::Moved;
     }
-    if state.may_perturb && !state.perturbed && state.stall >= STALL {
+    if state.may_perturb && !state.perturbed && (state.will_stall || state.stall >= STALL) {
         perturb::perturb_costs(core);
         state.perturbed = true;
         state.stall = 0;

@@ -7,13 +7,15 @@
 //! that Harris's tolerance makes equal; in the last profitable group with a good pivot, the largest
 //! |α_j| enters.
 //!
+//! The row may be as long as there are columns, so the passes over all of it are kept lean: signs
+//! without branches, products in place of quotients, ranges looked up and breakpoints sorted only
+//! as far as the slope can reach.
+//!
 //! Source: Fourer 1994; Maros 2003; Harris 1973.
 
 use crate::basis::Status;
-use crate::sparse::largest;
 use crate::state::Core;
 use crate::tolerances::{HARRIS_DUAL, PRIMAL};
-use std::ops::Range;
 
 /// What the test says.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -25,149 +27,191 @@ pub(crate) enum Choice {
 }
 
 /// A variable that bounds the step.
-#[derive(Clone, Copy, Debug)]
+#[derive(Clone, Copy, Debug, Default)]
 pub(crate) struct Breakpoint {
     variable: u32,
+    /// |α_j|.
     alpha: f64,
+    /// |d_j|.
     slack: f64,
-    range: f64,
+    /// slack / alpha, once the breakpoint is near.
+    ratio: f64,
+    /// Slope lost beyond it, once it is near.
+    loss: f64,
+    /// Harris's bound of the group that begins here, once the near ones are sorted.
+    bound: f64,
 }
 
 impl Breakpoint {
-    fn ratio(&self) -> f64 {
-        self.slack / self.alpha
-    }
-
-    /// The ratio with Harris's tolerance.
-    fn relaxed(&self) -> f64 {
-        (self.slack + HARRIS_DUAL) / self.alpha
+    /// Whether the breakpoint is at most at `bound`.
+    fn is_within(&self, bound: f64) -> bool {
+        self.slack <= bound * self.alpha
     }
 }
 
 /// Chooses the entering variable for the row in `scratch.row`.
 pub(crate) fn choose(core: &mut Core, position: u32, sign: f64) -> Choice {
-    let mut points = std::mem::take(&mut core.scratch.points);
-    list_breakpoints(core, sign, &mut points);
+    let mut store = std::mem::take(&mut core.scratch.points);
+    let (count, largest) = list(core, sign, &mut store);
+    let count = drop_small(&mut store[..count], core.care.least_entry(largest));
+    let points = &mut store[..count];
     core.scratch.flipped.clear();
-    core.ticks += points.len() as u64;
+    core.ticks += count as u64;
     let slope = core.violation[position as usize].sqrt();
-    let choice = match first_group(&points, slope) {
-        Some(entering) => Choice::Enter { entering },
-        None => long_step(core, &mut points, slope),
+    let nearest = nearest(points);
+    let entering = match first_group(core, points, nearest, slope) {
+        Some(entering) => Some(entering),
+        None => long_step(core, points, nearest, slope),
     };
-    core.scratch.points = points;
-    choice
+    core.scratch.points = store;
+    entering.map_or(Choice::None, |entering| Choice::Enter { entering })
 }
 
-/// The step past the first group: sorts the breakpoints up to where the slope ends.
-fn long_step(core: &mut Core, points: &mut Vec<Breakpoint>, slope: f64) -> Choice {
-    keep_near(points, slope);
-    points
-        .sort_unstable_by(|a, b| a.ratio().total_cmp(&b.ratio()).then(a.variable.cmp(&b.variable)));
-    core.ticks += points.len() as u64;
-    let Some(groups) = profitable_groups(points, slope) else { return Choice::None };
-    let last = best_group(points, &groups);
-    let Some(entering) = points[groups[last].clone()].iter().reduce(larger_pivot) else {
-        return Choice::None;
-    };
-    core.scratch.flipped.extend(points[..groups[last].start].iter().map(|point| point.variable));
-    Choice::Enter { entering: entering.variable }
+/// Lists the variables whose reduced cost falls to zero along the step: how many, and the largest
+/// |α| of the row.
+fn list(core: &Core, sign: f64, store: &mut Vec<Breakpoint>) -> (usize, f64) {
+    let row = &core.scratch.row;
+    if store.len() < row.count() + 1 {
+        store.resize(row.count() + 1, Breakpoint::default());
+    }
+    let (mut count, mut largest) = (0, 0.0);
+    for (variable, value) in row.iter() {
+        let j = variable as usize;
+        let size = value.abs();
+        largest = if size > largest { size } else { largest };
+        let falls = match core.status[j] {
+            Status::Basic => 0.0,
+            Status::Lower => sign * value,
+            Status::Upper => -(sign * value),
+            Status::Free => size,
+        };
+        let slack = core.reduced[j].abs();
+        store[count] = Breakpoint { variable, alpha: size, slack, ..Breakpoint::default() };
+        count += usize::from(falls > 0.0);
+    }
+    (count, largest)
 }
 
-/// Drops the breakpoints far beyond the one where the slope ends: a distance grown in tenfold steps
-/// from the nearest one until the slope ends within it.
-fn keep_near(points: &mut Vec<Breakpoint>, slope: f64) {
-    let nearest = points.iter().map(Breakpoint::relaxed).reduce(|a, b| if b < a { b } else { a });
-    let Some(mut reach) = nearest else { return };
-    let mut near = 0;
+/// Keeps the breakpoints with |α| above `least`, in order; returns how many.
+fn drop_small(points: &mut [Breakpoint], least: f64) -> usize {
+    let mut kept = 0;
+    for k in 0..points.len() {
+        points[kept] = points[k];
+        kept += usize::from(points[k].alpha > least);
+    }
+    kept
+}
+
+/// The least ratio with Harris's tolerance; infinite without breakpoints.
+fn nearest(points: &[Breakpoint]) -> f64 {
+    let mut bound = f64::INFINITY;
+    for point in points {
+        let relaxed = point.slack + HARRIS_DUAL;
+        if relaxed < bound * point.alpha {
+            bound = relaxed / point.alpha;
+        }
+    }
+    // The product with α must not round below the slack that the bound was made of.
+    bound * (1.0 + 4.0 * f64::EPSILON)
+}
+
+/// The slope lost when a variable is passed.
+fn loss(core: &Core, point: &Breakpoint) -> f64 {
+    let j = point.variable as usize;
+    point.alpha * (core.work_upper[j] - core.work_lower[j])
+}
+
+/// The largest pivot of the first group, when the slope ends there: the common case, without
+/// sorting.
+fn first_group(core: &Core, points: &[Breakpoint], nearest: f64, slope: f64) -> Option<u32> {
     let mut left = slope;
+    let mut best: Option<&Breakpoint> = None;
+    for point in points.iter().filter(|point| point.is_within(nearest)) {
+        left -= loss(core, point);
+        best = Some(best.map_or(point, |held| larger_pivot(held, point)));
+    }
+    best.filter(|_| left <= PRIMAL).map(|point| point.variable)
+}
+
+/// The step past the first group: sorts the breakpoints up to where the slope ends and takes the
+/// largest pivot of the last group whose pivot is not small beside the largest of all.
+fn long_step(core: &mut Core, points: &mut [Breakpoint], nearest: f64, slope: f64) -> Option<u32> {
+    let near = gather_near(core, points, nearest, slope);
+    let points = &mut points[..near];
+    points.sort_unstable_by(|a, b| a.ratio.total_cmp(&b.ratio).then(a.variable.cmp(&b.variable)));
+    core.ticks += near as u64;
+    let mut least = f64::INFINITY;
+    for point in points.iter_mut().rev() {
+        let relaxed = (point.slack + HARRIS_DUAL) / point.alpha;
+        least = if relaxed < least { relaxed } else { least };
+        point.bound = least;
+    }
+    let end = profitable(points, slope)?;
+    let start = last_good_group(&points[..end]);
+    let group = start..group_end(points, start);
+    let entering = points[group].iter().reduce(larger_pivot)?;
+    core.scratch.flipped.extend(points[..start].iter().map(|point| point.variable));
+    Some(entering.variable)
+}
+
+/// Moves the near breakpoints to the front and returns how many they are: those within a distance
+/// that grows tenfold from the nearest one until the slope ends within it.
+fn gather_near(core: &Core, points: &mut [Breakpoint], nearest: f64, slope: f64) -> usize {
+    let (mut reach, mut near, mut left) = (nearest, 0, slope);
     while near < points.len() && left > PRIMAL {
         reach *= 10.0;
-        let mut k = near;
-        while k < points.len() {
-            if points[k].ratio() <= reach {
-                left -= points[k].alpha * points[k].range;
+        for k in near..points.len() {
+            if points[k].is_within(reach) {
                 points.swap(k, near);
+                let point = &mut points[near];
+                point.ratio = point.slack / point.alpha;
+                point.loss = loss(core, point);
+                left -= point.loss;
                 near += 1;
             }
-            k += 1;
         }
         if reach == f64::INFINITY {
             break;
         }
     }
-    points.truncate(near);
+    near
 }
 
-/// The largest pivot of the first group, when the slope ends there: the common case, without
-/// sorting.
-fn first_group(points: &[Breakpoint], slope: f64) -> Option<u32> {
-    let bound = points.iter().map(Breakpoint::relaxed).reduce(|a, b| if b < a { b } else { a })?;
-    let group = || points.iter().filter(|point| point.ratio() <= bound);
-    let loss: f64 = group().map(|point| point.alpha * point.range).sum();
-    if slope - loss > PRIMAL {
-        return None;
-    }
-    group().reduce(larger_pivot).map(|point| point.variable)
+/// The end of the group that begins at a breakpoint.
+fn group_end(points: &[Breakpoint], start: usize) -> usize {
+    let bound = points[start].bound;
+    let count = points[start..].iter().take_while(|point| point.ratio <= bound).count();
+    if count == 0 { start + 1 } else { start + count }
 }
 
-/// Lists the variables whose reduced cost falls to zero along the step.
-fn list_breakpoints(core: &Core, sign: f64, points: &mut Vec<Breakpoint>) {
-    points.clear();
-    let mut largest = 0.0;
-    for (variable, value) in core.scratch.row.iter() {
-        let j = variable as usize;
-        let alpha = sign * value;
-        if alpha.abs() > largest {
-            largest = alpha.abs();
-        }
-        let blocks = match core.status[j] {
-            Status::Basic => false,
-            Status::Lower => alpha > 0.0,
-            Status::Upper => alpha < 0.0,
-            Status::Free => true,
-        };
-        if blocks {
-            let range = core.work_upper[j] - core.work_lower[j];
-            let slack = core.reduced[j].abs();
-            points.push(Breakpoint { variable, alpha: alpha.abs(), slack, range });
-        }
-    }
-    let least = core.care.least_entry(largest);
-    points.retain(|point| point.alpha > least);
-}
-
-/// The groups up to the one where the slope would end; none when it never does.
-fn profitable_groups(points: &[Breakpoint], slope: f64) -> Option<Vec<Range<usize>>> {
-    let mut bound = vec![f64::INFINITY; points.len()];
-    let mut least = f64::INFINITY;
-    for (k, point) in points.iter().enumerate().rev() {
-        least = if point.relaxed() < least { point.relaxed() } else { least };
-        bound[k] = least;
-    }
-    let mut groups = Vec::new();
-    let (mut start, mut slope) = (0, slope);
+/// The end of the group in which the slope ends; none when it never does.
+fn profitable(points: &[Breakpoint], slope: f64) -> Option<usize> {
+    let (mut start, mut left) = (0, slope);
     while start < points.len() {
-        let within =
-            points[start..].iter().take_while(|point| point.ratio() <= bound[start]).count();
-        let end = start + if within == 0 { 1 } else { within };
-        slope -= points[start..end].iter().map(|point| point.alpha * point.range).sum::<f64>();
-        groups.push(start..end);
-        if slope <= PRIMAL {
-            return Some(groups);
+        let end = group_end(points, start);
+        left -= points[start..end].iter().map(|point| point.loss).sum::<f64>();
+        if left <= PRIMAL {
+            return Some(end);
         }
         start = end;
     }
     None
 }
 
-/// The last group whose largest pivot is not small beside the largest of all.
-fn best_group(points: &[Breakpoint], groups: &[Range<usize>]) -> usize {
-    let pivot =
-        |range: &Range<usize>| largest(points[range.clone()].iter().map(|point| point.alpha));
-    let overall = largest(groups.iter().map(pivot));
+/// Where the last group begins whose largest pivot is not small beside the largest of all.
+fn last_good_group(points: &[Breakpoint]) -> usize {
+    let pivot = |group: &[Breakpoint]| crate::sparse::largest(group.iter().map(|p| p.alpha));
+    let overall = pivot(points);
     let enough = if overall < 10.0 { 0.1 * overall } else { 1.0 };
-    groups.iter().rposition(|range| pivot(range) >= enough).unwrap_or(0)
+    let (mut start, mut good) = (0, 0);
+    while start < points.len() {
+        let end = group_end(points, start);
+        if pivot(&points[start..end]) >= enough {
+            good = start;
+        }
+        start = end;
+    }
+    good
 }
 
 /// The one with the larger pivot, on ties the lower index.

@@ -62,6 +62,23 @@ impl SparseVector {
         self.value[place as usize] += value;
     }
 
+    /// Adds a multiple of many entries without listing them; [`list_below`](Self::list_below) must
+    /// follow.
+    pub(crate) fn add_unlisted(&mut self, places: &[u32], values: &[f64], multiplier: f64) {
+        for (&place, &value) in places.iter().zip(values) {
+            self.value[place as usize] += multiplier * value;
+        }
+    }
+
+    /// Lists the nonzero places below `end`, ascending.
+    pub(crate) fn list_below(&mut self, end: u32) {
+        for place in 0..end {
+            if self.value[place as usize] != 0.0 {
+                self.list(place);
+            }
+        }
+    }
+
     /// The listed places, in order of listing.
     pub(crate) fn indices(&self) -> &[u32] {
         &self.index
@@ -117,6 +134,9 @@ mod tests {
         v.set(0, 2.0);
         assert_eq!(v.indices(), &[2, 0]);
         assert_eq!(v.norm_squared(), 5.0);
+        v.add_unlisted(&[1, 3], &[1.0, 2.0], 3.0);
+        v.list_below(4);
+        assert_eq!((v.indices(), v.get(1), v.get(3)), (&[2, 0, 1, 3][..], 3.0, 6.0));
         v.clear();
         assert_eq!((v.count(), v.get(2), v.len()), (0, 0.0, 4));
     }

@@ -54,7 +54,9 @@ mod verify;
 pub use basis::{Basis, Repair};
 pub use checkpoint::Checkpoint;
 pub use outcome::{Outcome, Ray, Solution, StopReason};
-pub use presolve::{Postsolve, Presolved, PresolvedSolve, Restored, presolve, solve_presolved};
+pub use presolve::{
+    Postsolve, Presolved, PresolvedSolve, Presolver, Restored, presolve, solve_presolved,
+};
 pub use problem::{Col, NewRow, Problem, ProblemError, RowId};
 pub use simplex::{Limits, Progress, Simplex, Stats};
 pub use tableau::TableauRow;

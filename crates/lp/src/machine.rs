@@ -22,6 +22,9 @@ const ROUNDS: u32 = 20;
 /// Evaluations during which costs and bounds may be perturbed.
 const PERTURBED_ROUNDS: u32 = 4;
 
+/// Evaluations after which rows that no pivot mends end an attempt.
+const TOLERANT_ROUNDS: u32 = 7;
+
 /// Iterations between two looks at the cutoff.
 const CUTOFF_INTERVAL: u64 = 5;
 
@@ -236,10 +239,25 @@ impl Machine {
             DualStep::Exhausted if core.care.refines && self.round < 3 => {
                 self.phase = Phase::Evaluate;
             }
+            DualStep::Exhausted if core.care.refines && self.round < TOLERANT_ROUNDS => {
+                self.tolerate(core);
+            }
             DualStep::Exhausted => {
                 self.fall_back(core, "no violated row has a pivot that can be trusted".to_owned());
             }
         }
+    }
+
+    /// Goes on with the primal method, and with bounds that the violations left are within: rows that
+    /// depend on others are violated by what the sides of those were rounded by, and no pivot mends
+    /// that. The check of the outcome says whether it was no more than rounding.
+    fn tolerate(&mut self, core: &mut Core) {
+        core.work_cost.clone_from(&core.cost);
+        core.compute_reduced();
+        core.admit_violations();
+        self.primal.may_perturb = false;
+        primal::begin(core, &mut self.primal);
+        self.phase = Phase::Primal;
     }
 
     /// Makes fresh factors, or sets the row aside when they are fresh.

@@ -314,6 +314,20 @@ impl Core {
         }
     }
 
+    /// Moves the working bounds of violated basic variables to their values.
+    pub(crate) fn admit_violations(&mut self) {
+        for k in 0..self.violated.len() {
+            let position = self.violated[k] as usize;
+            let (j, value) = (self.head[position] as usize, self.basic[position]);
+            if value < self.work_lower[j] {
+                self.work_lower[j] = value;
+            } else if value > self.work_upper[j] {
+                self.work_upper[j] = value;
+            }
+            self.note_violation(position);
+        }
+    }
+
     /// Basic values after a step along `scratch.column`: x_B ← x_B − step · α.
     pub(crate) fn move_basic(&mut self, step: f64) {
         for k in 0..self.scratch.column.count() {

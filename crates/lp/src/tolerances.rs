@@ -61,8 +61,12 @@ pub(crate) const PERTURB_COST: f64 = 5e-7;
 /// Size of a bound perturbation, relative to 1 + |bound|.
 pub(crate) const PERTURB_BOUND: f64 = 1e-7;
 
-/// Most updates before the factors are made afresh.
-pub(crate) const UPDATES: usize = 100;
+/// Most updates before the factors are made afresh: more for more rows, whose factors are dearer to
+/// make. Common practice.
+pub(crate) fn most_updates(rows: usize) -> usize {
+    let updates = 100 + rows / 100;
+    if updates < 1000 { updates } else { 1000 }
+}
 
 /// Difference allowed between the new diagonal of an update and the one that follows from the
 /// pivot; relative. Beyond it the factors are made afresh.
@@ -71,7 +75,8 @@ pub(crate) const UPDATE_AGREEMENT: f64 = 1e-7;
 /// Share of nonzeros from which a triangular solve walks every slot.
 pub(crate) const HYPERSPARSE: f64 = 0.1;
 
-/// Row violation of a released point; relative to 1 + the largest |a x| of the row.
+/// Row violation of a released point; relative to the largest |a x| of the row, plus 1 in the
+/// caller's or in scaled units, whichever is less.
 pub(crate) const VERIFY_ROW: f64 = 2e-9;
 
 /// Wrong-signed reduced cost of released duals; relative to 1 + the largest |y a| of the column.

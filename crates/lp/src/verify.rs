@@ -166,7 +166,9 @@ impl Core {
         }
         let activities = self.activities(x);
         for (i, &(activity, size)) in activities.iter().enumerate() {
-            let room = VERIFY_ROW * (1.0 + size);
+            let unit = self.unit[n + i];
+            let one = if unit > 1.0 { 1.0 / unit } else { 1.0 };
+            let room = VERIFY_ROW * (one + size);
             if activity.is_nan()
                 || activity < self.lower[n + i] - room
                 || activity > self.upper[n + i] + room

@@ -13,7 +13,7 @@ mod weights;
 
 use crate::basis::Status;
 use crate::state::{Core, for_column};
-use crate::tolerances::{STALL, WEIGHT_RATIO};
+use crate::tolerances::WEIGHT_RATIO;
 pub(crate) use ratio::Breakpoint;
 use ratio::Choice;
 
@@ -44,14 +44,14 @@ pub(crate) struct DualState {
     pub(crate) perturbed: bool,
     /// False when perturbation is not allowed.
     pub(crate) may_perturb: bool,
-    /// True when costs are to be perturbed without waiting for a stall.
-    pub(crate) will_stall: bool,
+    /// Steps without change of the dual objective after which costs are perturbed.
+    pub(crate) patience: u32,
     /// The dual objective's gain since the method began (working costs).
     pub(crate) gain: f64,
 }
 
 /// Makes the start dual feasible by shifting the working costs of wrong-signed columns, and sees
-/// whether it must stall.
+/// how soon a stall is to be expected.
 pub(crate) fn begin(core: &mut Core, state: &mut DualState) {
     for j in 0..core.variables() {
         core.shift_if_wrong(j);
@@ -59,7 +59,7 @@ pub(crate) fn begin(core: &mut Core, state: &mut DualState) {
     state.aside.clear();
     state.stall = 0;
     state.gain = 0.0;
-    state.will_stall = perturb::will_stall(core);
+    state.patience = perturb::patience(core);
 }
 
 /// One step.
@@ -75,7 +75,7 @@ pub(crate) fn step(core: &mut Core, state: &mut DualState) -> DualStep {
     if core.mend_weight(position) {
         return DualStep::Moved;
     }
-    if state.may_perturb && !state.perturbed && (state.will_stall || state.stall >= STALL) {
+    if state.may_perturb && !state.perturbed && state.stall >= state.patience {
         perturb::perturb_costs(core);
         state.perturbed = true;
         state.stall = 0;

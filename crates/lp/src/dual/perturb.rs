@@ -1,30 +1,29 @@
 //! Perturbation of costs against stalling: each nonbasic reduced cost moves a little way into its
 //! feasible side, by an amount that is fixed by the variable's index.
 //!
-//! It waits for a stall, but not where one is sure to come: from a start with many reduced costs of
-//! zero (flows and assignments without cost of their own) and many violated rows, ties would be
-//! walked through by chance, at two to three times the pivots on packing. After one bound has
-//! changed few rows are violated, and a perturbation would cost more than it saves.
+//! It waits for a stall, but for less long where one is to be expected. With many reduced costs of
+//! zero (flows and assignments without cost of their own), ties would be walked through by chance:
+//! from a start with many violated rows at two to three times the pivots on packing. After one bound
+//! has changed few rows are violated and most solves are over before a perturbation would pay.
 //!
 //! Source: Koberstein 2005, section 6.3.
 
 use crate::basis::Status;
 use crate::random::half_to_one;
 use crate::state::Core;
-use crate::tolerances::{DUAL, PERTURB_COST};
+use crate::tolerances::{DUAL, PERTURB_COST, STALL};
 
-/// Share of reduced costs that are zero from which a stall is sure to come.
+/// Share of reduced costs that are zero from which a stall is to be expected.
 const ZERO_SHARE: f64 = 0.25;
 
-/// Violated rows from which it is.
+/// Violated rows from which it is sure to come.
 const MANY_VIOLATED: usize = 10;
 
-/// True when the start is sure to stall.
-pub(super) fn will_stall(core: &Core) -> bool {
-    let violated = |&&position: &&u32| core.violation[position as usize] > 0.0;
-    if core.violated.iter().filter(violated).count() < MANY_VIOLATED {
-        return false;
-    }
+/// Steps without progress that are enough where a stall is to be expected.
+const SHORT_STALL: u32 = 3;
+
+/// How many steps without progress are waited for from the start that the state is in.
+pub(super) fn patience(core: &Core) -> u32 {
     let (mut zero, mut all) = (0u32, 0u32);
     for j in (0..core.variables()).filter(|&j| core.status[j] != Status::Basic) {
         if !core.is_fixed(j) {
@@ -32,7 +31,14 @@ pub(super) fn will_stall(core: &Core) -> bool {
             zero += u32::from(core.reduced[j].abs() <= DUAL);
         }
     }
-    f64::from(zero) >= ZERO_SHARE * f64::from(all)
+    let violated = |&&position: &&u32| core.violation[position as usize] > 0.0;
+    if f64::from(zero) < ZERO_SHARE * f64::from(all) {
+        STALL
+    } else if core.violated.iter().filter(violated).count() < MANY_VIOLATED {
+        SHORT_STALL
+    } else {
+        0
+    }
 }
 
 /// Perturbs the working costs of nonbasic variables; reduced costs keep their signs.

@@ -160,7 +160,8 @@ fn gather_near(core: &Core, points: &mut [Breakpoint], nearest: f64, slope: f64)
     let (mut reach, mut near, mut left) = (nearest, 0, slope);
     while near < points.len() && left > PRIMAL {
         reach *= 10.0;
-        for k in near..points.len() {
+        let first = near;
+        for k in first..points.len() {
             if points[k].is_within(reach) {
                 points.swap(k, near);
                 let point = &mut points[near];

@@ -85,7 +85,7 @@ fn values_carried_along_agree_with_fresh_ones() {
         let mut state = DualState { may_perturb: true, ..DualState::default() };
         let wrong = core.worst_reduced() > 0.0;
         begin(&mut core, &mut state);
-        state.stall = STALL;
+        state.patience = 0;
         while step(&mut core, &mut state) == DualStep::Moved {}
         assert!(state.perturbed && (salt < 75 || wrong));
         let (basic, reduced, head) = (core.basic.clone(), core.reduced.clone(), core.head.clone());

@@ -18,7 +18,7 @@ mod work;
 pub(crate) use pivots::BasisColumns;
 
 use crate::sparse::SparseVector;
-use crate::tolerances::{UPDATES, solve_drop};
+use crate::tolerances::{most_updates, solve_drop};
 use forrest_tomlin::RowFile;
 use pivots::Pivots;
 use triangle::{Direction, Triangle};
@@ -76,7 +76,7 @@ impl Factor {
             position_of_slot: pivots.position_of_step,
             step_of_row: pivots.step_of_row,
             slot_of_position: pivots.step_of_position,
-            work: Work::new(size + UPDATES),
+            work: Work::new(size + most_updates(size)),
             ..Self::default()
         };
         factor.lower_rows = factor.lower_columns.transposed();
@@ -145,7 +145,9 @@ impl Factor {
     /// True when the updates have outgrown the factors, or one of them did not fit.
     pub(crate) fn is_worn(&self) -> bool {
         let now = self.upper_rows.nonzeros() + self.file.nonzeros();
-        self.is_doubtful || self.updates() >= UPDATES || now > 3 * self.fresh + 1000
+        self.is_doubtful
+            || self.updates() >= most_updates(self.row_of_step.len())
+            || now > 3 * self.fresh + 1000
     }
 }
 

@@ -223,7 +223,7 @@ fn sparse_and_full_solves_give_the_same_bits() {
     exchange_some(&mut factor, &mut columns, &mut random);
     let slots = factor.diagonal.len();
     for slot in 0..slots as u32 {
-        let mut sparse = Work::new(size + UPDATES);
+        let mut sparse = Work::new(size + most_updates(size));
         let mut full = sparse.clone();
         sparse.set(slot, 1.0);
         (0..slots as u32).for_each(|k| full.set(k, f64::from(u8::from(k == slot))));

@@ -16,6 +16,7 @@
 //! | `fixed` | fixed and empty columns |
 //! | `implied_free` | a column of one row whose bounds that row implies leaves with the row |
 //! | `slack` | a column of one row that is a slack widens the row |
+//! | `doubleton` | an equation with two columns leaves with one of them |
 //! | `dominated` | columns whose reduced cost has one sign whatever the duals |
 //! | `duplicate_rows` | rows that are multiples of one another |
 //! | `duplicate_columns` | columns that are multiples of one another |
@@ -26,12 +27,14 @@
 //! Source: Andersen, Andersen, Mathematical Programming 71 (1995) 221–245.
 
 mod dominated;
+mod doubleton;
 mod duplicate_columns;
 mod duplicate_rows;
 mod fixed;
 mod forcing;
 mod implied_free;
 mod parallel;
+mod passes;
 mod postsolve;
 mod redundant;
 mod singleton_row;
@@ -40,17 +43,13 @@ mod solve;
 mod tighten;
 mod work;
 
+pub use passes::Presolver;
 pub use postsolve::{Postsolve, Restored};
 pub use solve::{PresolvedSolve, solve_presolved};
 
 use crate::outcome::Ray;
 use crate::problem::Problem;
 use crate::verify::make_whole;
-use work::{Halt, Work};
-
-/// Most rounds of all reductions.
-const ROUNDS: u32 = 12;
-
 /// What presolve finds.
 #[derive(Clone, Debug)]
 pub enum Presolved {
@@ -68,42 +67,11 @@ pub enum Presolved {
     NoOptimum,
 }
 
-/// Reduces a problem. Deterministic; each round takes time in proportion to the nonzeros, but for
-/// sorting rows and columns in the search for multiples.
+/// Reduces a problem, to the end: [`Presolver`] does it in slices. Deterministic; each round takes
+/// time in proportion to the nonzeros, but for sorting rows and columns in the search for multiples.
 #[must_use]
 pub fn presolve(problem: &Problem) -> Presolved {
-    let mut work = Work::new(problem);
-    match reduce(&mut work) {
-        Ok(()) => {
-            let (reduced, postsolve) = postsolve::finish(work, problem);
-            Presolved::Reduced { problem: reduced, postsolve: Box::new(postsolve) }
-        }
-        Err(Halt::NoOptimum) => Presolved::NoOptimum,
-        Err(Halt::Infeasible(row)) => Presolved::Infeasible(proof(problem, row)),
-    }
-}
-
-/// All reductions until none finds anything.
-fn reduce(work: &mut Work) -> Result<(), Halt> {
-    work.refuse_crossed_ranges()?;
-    for _ in 0..ROUNDS {
-        let before = work.step_count();
-        singleton_row::reduce(work)?;
-        forcing::reduce(work)?;
-        redundant::reduce(work)?;
-        fixed::reduce(work)?;
-        implied_free::reduce(work)?;
-        slack::reduce(work)?;
-        dominated::reduce(work)?;
-        if work.step_count() == before {
-            duplicate_rows::reduce(work)?;
-            duplicate_columns::reduce(work)?;
-        }
-        if work.step_count() == before {
-            break;
-        }
-    }
-    redundant::reduce(work)
+    Presolver::new(problem.clone()).finish()
 }
 
 /// The proof that a row of the problem as given cannot hold within the bounds as given.

@@ -4,9 +4,10 @@ use crate::basis::{Basis, Status};
 use crate::outcome::Solution;
 use crate::problem::{Col, Problem};
 
-use super::work::Work;
+use super::work::{Work, put};
 use super::{
-    duplicate_columns, duplicate_rows, fixed, forcing, implied_free, singleton_row, slack,
+    doubleton, duplicate_columns, duplicate_rows, fixed, forcing, implied_free, singleton_row,
+    slack,
 };
 
 /// A column fixed by a forcing row.
@@ -28,6 +29,7 @@ pub(crate) enum Step {
     Fixed { column: u32, value: f64, cost: f64, status: Status },
     ImpliedFree(implied_free::Pair),
     Slack(slack::Slack),
+    Doubleton(doubleton::Pair),
     DuplicateRow(duplicate_rows::Merged),
     DuplicateColumn(duplicate_columns::Merged),
 }
@@ -62,6 +64,7 @@ impl Restored {
 /// Takes a solution of the reduced problem back to the one as given.
 #[derive(Clone, Debug)]
 pub struct Postsolve {
+    /// The matrix as the last step left it, with the entries of what was taken out.
     rows: Vec<Vec<(u32, f64)>>,
     columns: Vec<Vec<(u32, f64)>>,
     kept_rows: Vec<u32>,
@@ -70,7 +73,7 @@ pub struct Postsolve {
 }
 
 /// The reduced problem and the way back.
-pub(crate) fn finish(work: Work, given: &Problem) -> (Problem, Postsolve) {
+pub(crate) fn finish(work: Work) -> (Problem, Postsolve) {
     let (kept_rows, kept_columns) = (work.rows_in(), work.columns_in());
     let mut place = vec![0; work.cost.len()];
     let mut problem = Problem::new();
@@ -86,12 +89,8 @@ pub(crate) fn finish(work: Work, given: &Problem) -> (Problem, Postsolve) {
         let (lower, upper) = work.sides(i);
         let _ = problem.add_row(&entries, lower, upper);
     }
-    let rows: Vec<Vec<(u32, f64)>> = given.rows.iter().map(|row| row.entries.clone()).collect();
-    let mut columns = vec![Vec::new(); given.cost.len()];
-    for (i, row) in (0u32..).zip(&rows) {
-        row.iter().for_each(|&(j, value)| columns[j as usize].push((i, value)));
-    }
-    (problem, Postsolve { rows, columns, kept_rows, kept_columns, steps: work.steps })
+    let (rows, columns, steps) = work.into_parts();
+    (problem, Postsolve { rows, columns, kept_rows, kept_columns, steps })
 }
 
 impl Postsolve {
@@ -115,8 +114,9 @@ impl Postsolve {
             let status = basis.status(self.kept_columns.len() + new);
             restored.set_row(self, i, solution.duals[new], status);
         }
+        let mut matrix = self.clone();
         for step in self.steps.iter().rev() {
-            self.undo(step, &mut restored);
+            matrix.undo(step, &mut restored);
         }
         restored
     }
@@ -127,7 +127,7 @@ impl Postsolve {
         self.steps.len()
     }
 
-    fn undo(&self, step: &Step, restored: &mut Restored) {
+    fn undo(&mut self, step: &Step, restored: &mut Restored) {
         match step {
             Step::Redundant { row } => restored.set_row(self, *row, 0.0, Status::Basic),
             Step::Forcing { row, from_above, columns } => {
@@ -139,9 +139,16 @@ impl Postsolve {
             }
             Step::ImpliedFree(pair) => implied_free::undo(self, restored, *pair),
             Step::Slack(slack) => slack::undo(self, restored, *slack),
+            Step::Doubleton(pair) => doubleton::undo(self, restored, pair),
             Step::DuplicateRow(merged) => duplicate_rows::undo(self, restored, *merged),
             Step::DuplicateColumn(merged) => duplicate_columns::undo(self, restored, *merged),
         }
+    }
+
+    /// Sets an entry of the matrix.
+    pub(crate) fn set_entry(&mut self, i: u32, j: u32, value: f64) {
+        put(&mut self.rows[i as usize], j, value);
+        put(&mut self.columns[j as usize], i, value);
     }
 
     /// The place of a row's logical among the statuses.

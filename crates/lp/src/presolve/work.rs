@@ -63,11 +63,26 @@ pub(crate) fn term(a: f64, (lower, upper): (f64, f64)) -> (f64, f64) {
     if a > 0.0 { (a * lower, a * upper) } else { (a * upper, a * lower) }
 }
 
+/// Entries (place, value), places ascending, list by list.
+pub(crate) type Lists = Vec<Vec<(u32, f64)>>;
+
+/// Sets the value at a place of a list, which is not there when it is zero.
+pub(crate) fn put(list: &mut Vec<(u32, f64)>, place: u32, value: f64) {
+    match (list.binary_search_by_key(&place, |entry| entry.0), value != 0.0) {
+        (Ok(at), true) => list[at].1 = value,
+        (Ok(at), false) => {
+            list.remove(at);
+        }
+        (Err(at), true) => list.insert(at, (place, value)),
+        (Err(_), false) => {}
+    }
+}
+
 /// What is left of the problem.
 #[derive(Clone, Debug)]
 pub(crate) struct Work {
-    rows: Vec<Vec<(u32, f64)>>,
-    columns: Vec<Vec<(u32, f64)>>,
+    rows: Lists,
+    columns: Lists,
     pub(crate) cost: Vec<f64>,
     pub(crate) lower: Vec<f64>,
     pub(crate) upper: Vec<f64>,
@@ -164,6 +179,28 @@ impl Work {
     /// Lower and upper bound of a column.
     pub(crate) fn bounds(&self, j: u32) -> (f64, f64) {
         (self.lower[j as usize], self.upper[j as usize])
+    }
+
+    /// An entry; zero where there is none.
+    pub(crate) fn entry(&self, i: u32, j: u32) -> f64 {
+        let column = &self.columns[j as usize];
+        column.binary_search_by_key(&i, |entry| entry.0).map_or(0.0, |at| column[at].1)
+    }
+
+    /// Sets an entry whose row and column are in.
+    pub(crate) fn set_entry(&mut self, i: u32, j: u32, value: f64) {
+        let had = self.entry(i, j) != 0.0;
+        put(&mut self.rows[i as usize], j, value);
+        put(&mut self.columns[j as usize], i, value);
+        let has = value != 0.0;
+        for size in [&mut self.row_size[i as usize], &mut self.column_size[j as usize]] {
+            *size = *size + u32::from(has) - u32::from(had);
+        }
+    }
+
+    /// Rows, columns and the stack.
+    pub(crate) fn into_parts(self) -> (Lists, Lists, Vec<Step>) {
+        (self.rows, self.columns, self.steps)
     }
 
     /// Takes a row out.

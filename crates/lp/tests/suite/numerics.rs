@@ -25,7 +25,7 @@ fn bounds(random: &mut Random, boxed: bool) -> (f64, f64) {
 
 /// Rows through a point, each entry of a size of its own; some rows are multiples of the one
 /// before.
-fn wide(seed: u64, boxed: bool) -> Shadow {
+pub(crate) fn wide(seed: u64, boxed: bool) -> Shadow {
     let mut random = Random::new(seed);
     let (columns, rows) = (random.integer(5, 40) as usize, random.integer(3, 30) as usize);
     let mut shadow = Shadow::default();

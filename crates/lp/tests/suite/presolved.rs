@@ -8,7 +8,8 @@ use crate::instances::{
 };
 use crate::shadow::{Shadow, Verdict};
 use hullward_lp::{
-    Limits, Outcome, Presolved, Restored, Simplex, Solution, presolve, solve_presolved,
+    Limits, Outcome, Presolved, PresolvedSolve, Progress, Restored, Simplex, Solution, presolve,
+    solve_presolved,
 };
 
 /// What was seen over many problems.
@@ -90,7 +91,7 @@ fn random_problems_of_every_kind() {
 }
 
 /// Rows and columns that presolve is for, strewn over random problems: multiples of rows and
-/// columns, single entries, slacks, columns that nobody holds.
+/// columns, single entries, slacks, columns that nobody holds, equations with two columns.
 #[test]
 fn random_problems_with_more_to_reduce() {
     let mut seen = Seen::default();
@@ -136,6 +137,88 @@ fn embellish(shadow: &mut Shadow, seed: u64) {
         let single = random.integer(0, shadow.cost.len() as i64 - 1) as usize;
         shadow.row(vec![(single, 2.0)], random.whole(-9, -4), random.whole(6, 19));
     }
+    for _ in 0..random.integer(1, 3) {
+        tie(shadow, &mut random);
+    }
+}
+
+/// A new column in a few rows, tied to an old one by an equation.
+fn tie(shadow: &mut Shadow, random: &mut crate::random::Random) {
+    let old = random.integer(0, shadow.cost.len() as i64 - 1) as usize;
+    let (low, width) = (random.whole(-9, 2), random.whole(1, 14));
+    let bounds = match random.integer(0, 3) {
+        0 => (-INFINITY, INFINITY),
+        1 => (low, INFINITY),
+        _ => (low, low + width),
+    };
+    let new = shadow.column(random.whole(-3, 5), bounds.0, bounds.1);
+    for _ in 0..random.integer(0, 3) {
+        let at = random.integer(0, shadow.rows.len() as i64 - 1) as usize;
+        if shadow.rows[at].0.iter().all(|entry| entry.0 != new) {
+            shadow.rows[at].0.push((new, random.whole(1, 4)));
+        }
+    }
+    let factor = if random.one_in(2) { 2.0 } else { -1.0 };
+    let side = random.whole(-2, 3);
+    shadow.row(vec![(new, 1.0), (old, factor)], side, side);
+}
+
+/// x + 2y = 10 with 0 ≤ x ≤ 4 says 3 ≤ y ≤ 5: in turn y is held by x's upper bound, by its own
+/// and by none.
+#[test]
+fn an_equation_with_two_columns_leaves_with_one() {
+    for (cost, upper, expected) in
+        [((1.0, 3.0), 9.0, 13.0), ((3.0, 1.0), 4.5, 7.5), ((0.0, -1.0), 9.0, -5.0)]
+    {
+        let mut shadow = Shadow::default();
+        let x = shadow.column(cost.0, 0.0, 4.0);
+        let y = shadow.column(cost.1, 0.0, upper);
+        let z = shadow.column(-0.25, 0.0, 6.0);
+        shadow.row(vec![(x, 1.0), (y, 2.0)], 10.0, 10.0);
+        shadow.row(vec![(x, 1.0), (y, 1.0), (z, 1.0)], -INFINITY, 12.0);
+        shadow.row(vec![(x, 1.0), (y, -1.0), (z, 2.0)], -3.0, 11.0);
+        let Presolved::Reduced { postsolve, .. } = presolve(&shadow.problem()) else { panic!() };
+        assert!(postsolve.reduction_count() > 0);
+        check(&shadow, &format!("costs {cost:?}"), &mut Seen::default());
+        let solved = solve_presolved(&shadow.problem());
+        let Some(Outcome::Optimal(solution)) = solved.simplex.outcome() else { panic!() };
+        let of_z = -0.25 * solution.x[2];
+        assert!((solution.objective - of_z - expected).abs() < 1e-9, "{cost:?}: {solution:?}");
+    }
+}
+
+/// Stopped after every number of steps, and in every slice size: the same bytes.
+#[test]
+fn slices_change_no_byte() {
+    let mut most = 0;
+    for kind in KINDS {
+        for seed in [3, 4] {
+            let mut shadow = generate(kind, seed);
+            embellish(&mut shadow, seed);
+            let bytes = |solve: &PresolvedSolve| {
+                let simplex = &solve.simplex;
+                let sizes = (solve.rows, solve.columns, solve.reduced, simplex.stats());
+                format!("{:?} {:?} {sizes:?}", simplex.outcome(), simplex.basis())
+            };
+            let expected = bytes(&solve_presolved(&shadow.problem()));
+            let mut steps = PresolvedSolve::new(shadow.problem());
+            let mut count = 1;
+            while steps.advance(0) == Progress::Working {
+                let mut resumed = steps.clone();
+                while resumed.advance(u64::MAX) == Progress::Working {}
+                assert_eq!(bytes(&resumed), expected, "{kind} {seed}: stopped at step {count}");
+                count += 1;
+            }
+            assert_eq!(bytes(&steps), expected, "{kind} {seed}, step by step");
+            most = if count > most { count } else { most };
+            for ticks in 1..80 {
+                let mut sliced = PresolvedSolve::new(shadow.problem());
+                while sliced.advance(ticks) == Progress::Working {}
+                assert_eq!(bytes(&sliced), expected, "{kind} {seed}, slices of {ticks}");
+            }
+        }
+    }
+    assert!(most > 30, "{most} steps at most");
 }
 
 #[test]

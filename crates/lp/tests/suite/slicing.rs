@@ -2,8 +2,12 @@
 
 use crate::families::{KINDS, generate};
 use crate::instances::{multi_commodity, single_commodity};
+use crate::numerics::wide;
 use crate::shadow::{Shadow, new_row};
 use hullward_lp::{Col, Limits, Progress, Simplex};
+
+/// A seed of the wide problems whose first attempts fail.
+const CAREFUL: u64 = 129;
 
 fn check(shadow: &Shadow, limits: Limits, slices: &[u64], name: &str) {
     let mut whole = shadow.simplex();
@@ -98,6 +102,39 @@ fn an_interruption_at_any_unit_of_work_changes_no_byte() {
                 assert_eq!(bytes(&stopped), expected, "{kind} {seed}: stopped after {ticks}");
             }
         }
+    }
+}
+
+/// The same for a solve from an optimal basis: costs turned round (the primal method), bounds cut
+/// (the dual one), and a problem whose equalities hold up to rounding only, which no attempt
+/// settles at once (refined solves and new starts): stopped after every step.
+#[test]
+fn an_interruption_of_every_method_changes_no_byte() {
+    let mut primal = generate("box", 7).simplex();
+    primal.solve(Limits::default());
+    (0..primal.column_count()).for_each(|j| primal.set_cost(Col(j), f64::from(j % 5) - 2.0));
+    let mut dual = generate("degenerate", 9).simplex();
+    dual.solve(Limits::default());
+    (0..3).for_each(|j| dual.set_bounds(Col(j), 0.0, 0.0));
+    let careful = wide(70_000 + CAREFUL, CAREFUL.is_multiple_of(2)).simplex();
+    for (name, ready) in [("primal", primal), ("dual", dual), ("careful", careful)] {
+        let bytes = |solver: &Simplex| {
+            format!("{:?} {:?} {:?}", solver.outcome(), solver.stats(), solver.basis())
+        };
+        let mut whole = ready.clone();
+        whole.solve(Limits::default());
+        assert!(whole.stats().iterations > ready.stats().iterations, "{name}: nothing to do");
+        let expected = bytes(&whole);
+        let mut steps = ready.clone();
+        steps.start(Limits::default());
+        let mut count = 0;
+        while steps.advance(0) == Progress::Working {
+            let mut resumed = steps.clone();
+            while resumed.advance(u64::MAX) == Progress::Working {}
+            assert_eq!(bytes(&resumed), expected, "{name}: stopped after step {count}");
+            count += 1;
+        }
+        assert_eq!(bytes(&steps), expected, "{name}, step by step");
     }
 }
 

@@ -61,3 +61,43 @@ impl Care {
         if largest < 1.0 { self.entry * largest } else { self.entry }
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::problem::{Col, Problem};
+    use crate::simplex::{Limits, Simplex};
+
+    /// A careful attempt once left its settings behind: what was asked of the solver afterwards then
+    /// rested on other factors than the same question to a solver that had had no trouble.
+    #[test]
+    fn what_follows_a_careful_attempt_starts_from_the_first_ones_settings() {
+        let mut problem = Problem::new();
+        let columns: Vec<Col> =
+            (0..5).map(|j| problem.add_column(f64::from(j % 3) - 2.0, 0.0, 9.0).unwrap()).collect();
+        for i in 0..4 {
+            let entry = |&j: &Col| (j, 1.0 + f64::from((3 * i + 5 * j.0 + i * j.0) % 11));
+            let row: Vec<(Col, f64)> = columns.iter().map(entry).collect();
+            problem.add_row(&row, f64::NEG_INFINITY, 20.0 + f64::from(i)).unwrap();
+        }
+        let mut smooth = Simplex::new(problem);
+        smooth.solve(Limits::default());
+        let mut careful = smooth.clone();
+        careful.core.care = ATTEMPTS[5];
+        careful.core.canonical = false;
+        let (mut bound, mut estimate) = (careful.clone(), careful.clone());
+        let mut set_aside = careful.clone();
+        let bits = |value: Option<f64>| value.map(f64::to_bits);
+        assert_eq!(bits(bound.dual_bound()), bits(smooth.dual_bound()));
+        assert_eq!(bits(estimate.condition_estimate()), bits(smooth.condition_estimate()));
+        set_aside.checkpoint();
+        careful.load_basis(&smooth.basis());
+        for simplex in [&bound, &estimate, &set_aside, &careful] {
+            assert_eq!(simplex.core.care, FAST);
+        }
+        careful.set_bounds(Col(0), 0.0, 1.0);
+        smooth.set_bounds(Col(0), 0.0, 1.0);
+        let outcome = careful.solve(Limits::default()).clone();
+        assert_eq!(&outcome, smooth.solve(Limits::default()));
+    }
+}

@@ -21,6 +21,34 @@ impl Draw {
         (i64::from(self.0.next_u32()) * bound) >> 32
     }
 
+    /// A place in a list of `count` members.
+    pub(super) fn place(&mut self, count: usize) -> usize {
+        let count = i64::try_from(count).unwrap_or(i64::MAX);
+        usize::try_from(self.below(count)).unwrap_or_default()
+    }
+
+    /// The numbers below `count` in a random order (Fisher & Yates).
+    pub(super) fn order(&mut self, count: usize) -> Vec<usize> {
+        let mut order: Vec<usize> = (0..count).collect();
+        for last in (1..count).rev() {
+            order.swap(last, self.place(last + 1));
+        }
+        order
+    }
+
+    /// An amount from `least` on: anywhere in the range, around its ends and its middle for
+    /// clustered data, the least or one more for data of 0 and 1; none where points are meant.
+    pub(super) fn amount(&mut self, class: Class, least: i64, range: i64) -> Option<i64> {
+        match class {
+            Class::Uniform => Some(least + self.below(range)),
+            Class::Clustered => {
+                Some(least + self.below(3) * (range / 3) + self.below(range / 9 + 1))
+            }
+            Class::ZeroOne => Some(least + self.below(2)),
+            Class::Euclidean | Class::NearlySymmetric => None,
+        }
+    }
+
     /// Points around three centres for clustered data, else anywhere.
     pub(super) fn points(&mut self, count: u32, class: Class) -> Vec<Point> {
         let centres: Vec<Point> = (0..3).map(|_| (self.below(800), self.below(800))).collect();

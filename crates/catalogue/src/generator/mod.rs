@@ -12,8 +12,12 @@ mod items;
 mod lots;
 mod networks;
 mod open_sites;
+mod packing;
 mod path;
+mod production;
+mod quadratic;
 mod round_trip;
+mod scheduling;
 
 use blocks::Blocks;
 
@@ -58,6 +62,17 @@ impl Class {
 /// | `ordering` | items | uniform, 0 and 1, nearly symmetric |
 /// | `grouping` | items | all but nearly symmetric |
 /// | `hub` | places, two hubs; lengths of shortest ways | all |
+/// | `bins` | sizes, with all patterns | uniform, clustered, 0 and 1 |
+/// | `knapsack` | items | uniform, clustered, 0 and 1 |
+/// | `gap` | jobs for three agents | uniform, clustered, 0 and 1 |
+/// | `cover` | rows, twice as many choices | uniform, clustered, 0 and 1 |
+/// | `machine` | jobs | uniform, clustered, 0 and 1 |
+/// | `job-shop` | jobs: half of it and 1, on three machines | uniform, clustered, 0 and 1 |
+/// | `rcpsp` | activities | uniform, clustered, 0 and 1 |
+/// | `clsp` | periods for two items | uniform, clustered, 0 and 1 |
+/// | `unit` | hours for three units | uniform, clustered, 0 and 1 |
+/// | `piecewise` | pieces of each of four curves | uniform, clustered, 0 and 1 |
+/// | `qap` | plants: half of it and 2 | all |
 ///
 /// `O(size²)`; `hub` `O(size³)`.
 #[must_use]
@@ -89,6 +104,24 @@ fn blocks(family: &str, size: u32, class: Class, seed: u64) -> Option<Blocks> {
         "ordering" => items::ordering(size, class, seed),
         "grouping" => items::grouping(size, class, seed),
         "hub" => Some(networks::hubs(size, class, seed)),
+        _ => planned(family, size, class, seed),
+    }
+}
+
+/// Packing, scheduling, production and quadratic assignment.
+fn planned(family: &str, size: u32, class: Class, seed: u64) -> Option<Blocks> {
+    match family {
+        "bins" => packing::bins(size, class, seed),
+        "knapsack" => packing::knapsack(size, class, seed),
+        "gap" => packing::agents(size, class, seed),
+        "cover" => packing::covers(size, class, seed),
+        "machine" => scheduling::machine(size, class, seed),
+        "job-shop" => scheduling::job_shop(size, class, seed),
+        "rcpsp" => scheduling::project(size, class, seed),
+        "clsp" => production::limited_lots(size, class, seed),
+        "unit" => production::units(size, class, seed),
+        "piecewise" => production::bent_costs(size, class, seed),
+        "qap" => Some(quadratic::plants(size, class, seed)),
         _ => None,
     }
 }
@@ -97,7 +130,7 @@ fn blocks(family: &str, size: u32, class: Class, seed: u64) -> Option<Blocks> {
 mod tests {
     use super::*;
 
-    const FAMILIES: [(&str, usize); 19] = [
+    const FAMILIES: [(&str, usize); 30] = [
         ("atsp", 5),
         ("tsp", 4),
         ("path", 5),
@@ -117,6 +150,17 @@ mod tests {
         ("ordering", 3),
         ("grouping", 4),
         ("hub", 5),
+        ("bins", 3),
+        ("knapsack", 3),
+        ("gap", 3),
+        ("cover", 3),
+        ("machine", 3),
+        ("job-shop", 3),
+        ("rcpsp", 3),
+        ("clsp", 3),
+        ("unit", 3),
+        ("piecewise", 3),
+        ("qap", 5),
     ];
 
     #[test]

@@ -18,7 +18,7 @@ pub(super) fn bins(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     let mut blocks = Blocks::new();
     let sizes = blocks.labels("I", 'i', size as usize);
     blocks.column(("w", "i"), &sizes, |k| lengths[k]);
-    blocks.column(("b", "i"), &sizes, |_| if class == Class::Clustered { 2 } else { 1 });
+    blocks.column(("b", "i"), &sizes, |k| if class == Class::Clustered && k < 2 { 2 } else { 1 });
     blocks.value("Q", length);
     let patterns = patterns(&lengths, length);
     let names = blocks.labels("P", 'p', patterns.len());

@@ -76,7 +76,7 @@ fn bins(rival: &str, data: &Data<'_>) -> Option<Size> {
     match rival {
         "assignment" => Some((k * (i + 1), i + k, 0)),
         "ordered" => Some((k * (i + 1), i + 2 * k - 1, 0)),
-        "arc-flow" => Some((i * (q + 1) - data.total("w") + q + 1, i + q, 0)),
+        "arc-flow" => Some((i * (q + 1) - data.total("w") + q, i + q, 0)),
         "patterns" => Some((data.count("P"), i, 0)),
         _ => None,
     }

@@ -67,18 +67,19 @@ fn one_way(subject: &Subject<'_>, pairs: &Pairs) -> Option<Diagnostic> {
     Some(message::one_way(name, pairs.at.len(), (leave, enter), span))
 }
 
-/// Whether each row of a family asks for one of the pairs that share an end.
+/// Whether each row of a family asks for one of the pairs that share an end, and some row has
+/// several to choose from. A row of a single pair, as where big-M orders two jobs, shares nothing.
 fn shares(subject: &Subject<'_>, pairs: &Pairs, family: usize, end: Shared) -> bool {
     let facts = &subject.facts;
     let mut largest = 0;
     for row in subject.model().families()[family].rows.clone().map(RowId) {
         let entries = subject.model().row_entries(row);
         let asks = facts.sides(row).0.is_some_and(|lower| *lower > Number::ZERO);
-        let ends: BTreeSet<LabelId> = entries
-            .iter()
-            .filter(|(column, a)| {
-                facts.variable(*column) == pairs.variable && *facts.number(*a) > Number::ZERO
-            })
+        let own = entries.iter().filter(|(column, a)| {
+            facts.variable(*column) == pairs.variable && *facts.number(*a) > Number::ZERO
+        });
+        let ends: BTreeSet<LabelId> = own
+            .clone()
             .map(|(column, _)| {
                 subject.model().column_tuple(*column)[usize::from(end == Shared::Second)]
             })
@@ -86,7 +87,7 @@ fn shares(subject: &Subject<'_>, pairs: &Pairs, family: usize, end: Shared) -> b
         if !asks || ends.len() > 1 || (ends.is_empty() && !entries.is_empty()) {
             return false;
         }
-        largest = largest.max(entries.len());
+        largest = largest.max(own.count());
     }
     largest > 1
         && facts

@@ -9,7 +9,9 @@ use model::Number;
 
 use crate::check::Checked;
 use crate::diagnostic::{Diagnostic, data as message, tidy};
-use crate::evaluate::{Element, Environment, Evaluated, Evaluator, Set, Value, Values, fail};
+use crate::evaluate::{
+    Element, Environment, Evaluated, Evaluator, Set, TupleMap, Value, Values, fail,
+};
 use crate::plan::{Node, Root, Shape, Step, Symbol, SymbolId};
 use crate::syntax::Relation;
 
@@ -246,17 +248,13 @@ impl<'i> Binder<'i> {
     }
 
     /// One value for each index tuple: the instance's where it has one, else the default.
-    fn indexed(
-        &mut self,
-        symbol: &Symbol,
-        datum: Option<&Datum>,
-    ) -> Evaluated<BTreeMap<Vec<Element>, Value>> {
+    fn indexed(&mut self, symbol: &Symbol, datum: Option<&Datum>) -> Evaluated<TupleMap<Value>> {
         let cells = match datum {
             Some(datum) => self.cells(symbol, datum)?,
-            None => BTreeMap::new(),
+            None => TupleMap::default(),
         };
         let keys = self.keys(&symbol.steps, &symbol.indices)?;
-        let mut values = BTreeMap::new();
+        let mut values = TupleMap::default();
         for (key, mut env) in keys {
             let what = || self.evaluator.shown(&symbol.name, &key, false);
             let value = match (cells.get(&key), &symbol.value, &symbol.shape) {
@@ -278,7 +276,7 @@ impl<'i> Binder<'i> {
             let value = self.shaped(symbol, value)?;
             let what = what();
             self.contained(symbol, &value, &what, &mut env)?;
-            values.insert(key, value);
+            values.insert(&key, value);
         }
         Ok(values)
     }
@@ -308,24 +306,24 @@ impl<'i> Binder<'i> {
 
     /// The cells of a datum: numbers of a table, or the last place of tuples as an element or
     /// as members of a set.
-    fn cells(&self, symbol: &Symbol, datum: &Datum) -> Evaluated<BTreeMap<Vec<Element>, Value>> {
+    fn cells(&self, symbol: &Symbol, datum: &Datum) -> Evaluated<TupleMap<Value>> {
         let places = symbol.indices.len();
         let mut pool = self.evaluator.pool.borrow_mut();
-        let mut cells = BTreeMap::new();
+        let mut cells = TupleMap::default();
         match (datum, &symbol.shape) {
             (Datum::Table { arity, cells: table }, Shape::Number | Shape::Element(_))
                 if *arity == places =>
             {
                 for (key, value) in table {
-                    let key = key.iter().map(|cell| pool.intern(cell)).collect();
-                    cells.insert(key, Value::Number(value.clone()));
+                    let key: Vec<Element> = key.iter().map(|cell| pool.intern(cell)).collect();
+                    cells.insert(&key, Value::Number(value.clone()));
                 }
             }
             (Datum::Tuples { arity, rows }, Shape::Element(_)) if *arity == places + 1 => {
                 for row in rows {
                     let mut key: Vec<Element> = row.iter().map(|cell| pool.intern(cell)).collect();
                     if let Some(last) = key.pop() {
-                        cells.insert(key, Value::Element(last));
+                        cells.insert(&key, Value::Element(last));
                     }
                 }
             }
@@ -338,10 +336,10 @@ impl<'i> Binder<'i> {
                     let member = key.split_off(places);
                     groups.entry(key).or_default().push(member);
                 }
-                let sets = groups
-                    .into_iter()
-                    .map(|(k, m)| (k, Value::Set(Rc::new(Set::new(roots.len(), m)))));
-                cells.extend(sets);
+                for (key, members) in groups {
+                    let set = Set::new(roots.len(), members);
+                    cells.insert(&key, Value::Set(Rc::new(set)));
+                }
             }
             _ => {
                 let wanted = format!("indexed by {places}");

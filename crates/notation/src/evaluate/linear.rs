@@ -50,7 +50,9 @@ impl Scale {
     }
 
     fn times(&self, factor: &Number) -> Self {
-        Self { factor: &self.factor * factor, guard: self.guard }
+        let one = self.factor == Number::ONE;
+        let factor = if one { factor.clone() } else { &self.factor * factor };
+        Self { factor, guard: self.guard }
     }
 
     /// Also where `guard` holds.

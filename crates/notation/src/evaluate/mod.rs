@@ -5,15 +5,16 @@ mod linear;
 mod number;
 mod sets;
 mod truth;
+mod tuples;
 mod value;
 mod walk;
 
 use std::cell::{Cell, RefCell};
-use std::collections::BTreeMap;
 use std::rc::Rc;
 
 pub(crate) use guard::Guard;
 pub(crate) use linear::{Linear, Rounded, Scale};
+pub(crate) use tuples::TupleMap;
 pub(crate) use value::{Element, Pool, Set, Value};
 pub(crate) use walk::{Found, Walk, placed};
 
@@ -48,13 +49,13 @@ pub(crate) fn moderate(number: Number) -> Evaluated<Number> {
 #[derive(Debug, Clone)]
 pub(crate) enum Values {
     Single(Value),
-    Indexed(BTreeMap<Vec<Element>, Value>),
+    Indexed(TupleMap<Value>),
 }
 
 /// The columns of a variable by index tuple.
 #[derive(Debug, Default)]
 pub(crate) struct Columns {
-    pub(crate) at: BTreeMap<Vec<Element>, u32>,
+    pub(crate) at: TupleMap<u32>,
 }
 
 /// A plan with the values of its symbols on an instance.
@@ -131,6 +132,23 @@ impl Evaluator {
         nodes.iter().map(|node| self.element(node, env)).collect()
     }
 
+    /// What a map holds at the tuple that the indices make.
+    fn at_key<'m, V>(
+        &self,
+        map: &'m TupleMap<V>,
+        indices: &[Node],
+        env: &mut Environment,
+    ) -> Evaluated<Option<&'m V>> {
+        let mut few = [Element::default(); 4];
+        if indices.len() > few.len() {
+            return Ok(map.get(&self.tuple(indices, env)?));
+        }
+        for (place, node) in few.iter_mut().zip(indices) {
+            *place = self.element(node, env)?;
+        }
+        Ok(map.get(&few[..indices.len()]))
+    }
+
     /// The value of a symbol at its indices.
     pub(crate) fn symbol(
         &self,
@@ -142,13 +160,13 @@ impl Evaluator {
         let name = || self.plan.symbols[id].name.clone();
         match &self.values[id] {
             Some(Values::Single(value)) => Ok(value.clone()),
-            Some(Values::Indexed(values)) => {
-                let key = self.tuple(indices, env)?;
-                match values.get(&key) {
-                    Some(value) => Ok(value.clone()),
-                    None => fail(rows::outside(&self.shown(&name(), &key, false), span)),
+            Some(Values::Indexed(values)) => match self.at_key(values, indices, env)? {
+                Some(value) => Ok(value.clone()),
+                None => {
+                    let key = self.tuple(indices, env)?;
+                    fail(rows::outside(&self.shown(&name(), &key, false), span))
                 }
-            }
+            },
             None => fail(data::unavailable(&name(), span)),
         }
     }
@@ -171,10 +189,10 @@ impl Evaluator {
         span: Span,
         env: &mut Environment,
     ) -> Evaluated<u32> {
-        let key = self.tuple(indices, env)?;
-        match self.columns[number].at.get(&key) {
+        match self.at_key(&self.columns[number].at, indices, env)? {
             Some(&column) => Ok(column),
             None => {
+                let key = self.tuple(indices, env)?;
                 let variable = &self.plan.variables[number];
                 let arrow = crate::expand::is_arrow(&variable.roots);
                 fail(rows::outside(&self.shown(&variable.name, &key, arrow), span))

@@ -4,6 +4,7 @@ use std::cell::RefCell;
 use std::collections::BTreeMap;
 use std::rc::Rc;
 
+use super::TupleMap;
 use model::Number;
 
 /// An element of a set: the number of its name in the [`Pool`].
@@ -57,7 +58,7 @@ pub(crate) struct Set {
     /// Whether its members are compared by value, not by their place in the listing.
     pub(crate) by_value: bool,
     flat: Vec<Element>,
-    lookup: BTreeMap<Vec<Element>, u32>,
+    lookup: TupleMap<u32>,
     slices: RefCell<BTreeMap<u32, Rc<Slice>>>,
 }
 
@@ -67,9 +68,9 @@ impl Set {
         let mut set = Self { arity, ..Self::default() };
         for tuple in tuples {
             let next = u32::try_from(set.lookup.len()).unwrap_or(u32::MAX);
-            if !set.lookup.contains_key(&tuple) {
+            if !set.lookup.contains(&tuple) {
                 set.flat.extend_from_slice(&tuple);
-                set.lookup.insert(tuple, next);
+                set.lookup.insert(&tuple, next);
             }
         }
         set
@@ -80,7 +81,7 @@ impl Set {
     }
 
     pub(crate) fn is_empty(&self) -> bool {
-        self.lookup.is_empty()
+        self.len() == 0
     }
 
     pub(crate) fn get(&self, index: usize) -> &[Element] {
@@ -96,7 +97,7 @@ impl Set {
     }
 
     pub(crate) fn contains(&self, tuple: &[Element]) -> bool {
-        self.lookup.contains_key(tuple)
+        self.lookup.contains(tuple)
     }
 
     /// The members whose places in `mask` (bit 0 is the first) hold `key`, in order. The first

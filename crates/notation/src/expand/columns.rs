@@ -1,13 +1,11 @@
 //! Columns: the index set of a variable is the union over its domain lines; several lines
 //! about one tuple intersect their bounds.
 
-use std::collections::BTreeMap;
-
 use model::{ColumnSpec, Number};
 
 use super::{Counted, Expansion, Stage, is_arrow};
 use crate::diagnostic::{rows as message, size};
-use crate::evaluate::{Element, Evaluated, Found, fail};
+use crate::evaluate::{Element, Evaluated, Found, TupleMap, fail};
 use crate::plan::{Bounding, Domain, Variable};
 use crate::syntax::NumberSet;
 
@@ -16,7 +14,7 @@ use crate::syntax::NumberSet;
 pub(super) struct Draft {
     tuples: Vec<Vec<Element>>,
     columns: Vec<DraftColumn>,
-    at: BTreeMap<Vec<Element>, usize>,
+    at: TupleMap<usize>,
 }
 
 #[derive(Debug, Clone, Default)]
@@ -103,7 +101,7 @@ impl Expansion {
             Some(&at) => at,
             None => {
                 let at = self.draft.tuples.len();
-                self.draft.at.insert(tuple.clone(), at);
+                self.draft.at.insert(&tuple, at);
                 self.draft.tuples.push(tuple);
                 self.draft.columns.push(DraftColumn::default());
                 at
@@ -163,7 +161,7 @@ impl Expansion {
             };
             match self.builder.column(&labels, &spec) {
                 Ok(id) => {
-                    self.evaluator.columns[number].at.insert(tuple, id.0);
+                    self.evaluator.columns[number].at.insert(&tuple, id.0);
                 }
                 Err(error) => return fail(size::model(error.to_string(), variable.span)),
             }

@@ -356,7 +356,7 @@ impl Expansion {
             else {
                 continue;
             };
-            let name = self.evaluator.shown(&variable.name, tuple, is_arrow(&variable.roots));
+            let name = self.evaluator.shown(&variable.name, &tuple, is_arrow(&variable.roots));
             self.warnings.push(crate::diagnostic::rows::unbounded(&name, variable.span));
         }
     }

@@ -165,7 +165,10 @@ impl Expansion {
         for (column, a) in &row.entries {
             let (lower, upper) = &self.bounds[column.index()];
             let (low, high) = if *a > Number::ZERO { (lower, upper) } else { (upper, lower) };
+            let one = *a == Number::ONE;
             let add = |sum: Option<Number>, x: &Option<Number>| match (sum, x) {
+                (Some(sum), Some(x)) if x.is_zero() => Some(sum),
+                (Some(sum), Some(x)) if one => Some(sum + x),
                 (Some(sum), Some(x)) => Some(sum + a * x),
                 _ => None,
             };

@@ -69,7 +69,11 @@ impl Parser<'_> {
                     continue;
                 }
                 T::Comma if depth == 0 && !(listed && found) => return false,
-                T::ForAll | T::Colon | T::SuchThat | T::Dots | T::Break => return false,
+                T::ForAll | T::Colon | T::SuchThat | T::Dots | T::Break | T::Or | T::Not => {
+                    return false;
+                }
+                // a relation in brackets is a condition
+                _ if kind.is_relation() && depth > 0 => return false,
                 T::Free if depth == 0 => return found,
                 _ if kind.is_relation()
                     && depth == 0

@@ -147,6 +147,12 @@ impl Parser<'_> {
             }
         }
         let gap = self.tokens[open].gap;
+        let computes = |t: &crate::lex::token::Token| {
+            t.kind.is_operator() && !matches!(t.kind, T::Minus | T::Slash | T::And | T::Or)
+        };
+        if self.tokens[open..last].iter().any(computes) {
+            return None;
+        }
         if open == self.at || !gap.has(Gap::SPACE) {
             return None;
         }

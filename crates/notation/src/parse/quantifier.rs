@@ -44,18 +44,19 @@ impl Parser<'_> {
             return false;
         }
         let mut depth = 0_u32;
-        for token in &self.tokens[self.at..self.end] {
+        let mut found = false;
+        for (i, token) in self.tokens[self.at..self.end].iter().enumerate() {
             if token.kind.opens() {
                 depth += 1;
             } else if token.kind.closes() {
                 depth = depth.saturating_sub(1);
             }
             let binds = token.kind.is_relation() || matches!(token.kind, T::Dots | T::ForAll);
-            if depth == 1 && binds {
-                return true;
-            }
+            found |= depth == 1 && binds;
             if depth == 0 {
-                return false;
+                // (a ∨ b) ∧ c is one condition
+                let next = self.ahead(i + 1);
+                return found && !next.is_operator() && !next.is_relation();
             }
         }
         false
@@ -103,7 +104,7 @@ impl Parser<'_> {
             let comma = self.eat(T::Comma) || and && self.eat(T::And);
             let ends = matches!(self.peek(), T::End | T::ForAll | T::Period)
                 || self.peek().closes()
-                || self.place.splits && self.at_bracketed_clause();
+                || !comma && self.place.splits && self.at_bracketed_clause();
             let more = !ends
                 && (comma
                     || self.place.quad_ends

@@ -1,0 +1,64 @@
+//! How long and in how much memory two million non-zeros are expanded, beside what it takes to
+//! write the same model as MPS text. It looks at a clock, so it is run by name only:
+//! `cargo test --release -p hullward-notation --test speed -- --ignored --nocapture`.
+#![allow(
+    clippy::unwrap_used,
+    clippy::expect_used,
+    clippy::panic,
+    clippy::disallowed_types,
+    reason = "a test ends where it fails, and this one measures time"
+)]
+
+use std::collections::BTreeMap;
+use std::time::Instant;
+
+use hullward_notation::{Expansion, Limits, bind, check, parse};
+use instance::Instance;
+use model::Number;
+
+const TEXT: &str = "data
+  V
+  A ⊆ V × V
+  c_{i,j} ∀ (i,j) ∈ A
+minimise
+  Σ_{(i,j) ∈ A} c_{i,j} x_{i,j}
+subject to
+  Σ_{j : (i,j) ∈ A} x_{i,j} = 1 ∀ i ∈ V (leave)
+  Σ_{i : (i,j) ∈ A} x_{i,j} = 1 ∀ j ∈ V (enter)
+  x_{i,j} ∈ {0,1} ∀ (i,j) ∈ A
+";
+
+/// A line of `/proc/self/status` in MB; 0 where there is none.
+fn memory(field: &str) -> u64 {
+    let status = std::fs::read_to_string("/proc/self/status").unwrap_or_default();
+    let line = status.lines().find(|line| line.starts_with(field)).unwrap_or_default();
+    line.split_whitespace().nth(1).and_then(|kb| kb.parse::<u64>().ok()).unwrap_or(0) / 1024
+}
+
+#[test]
+#[ignore = "it measures time"]
+fn two_million_nonzeros() {
+    let stops = 1_000;
+    let labels = (0..stops).map(|i| format!("stop {i}")).collect();
+    let cells: Vec<_> = (0..stops * stops).map(|i| Some(Number::from(7 + i * 31 % 997))).collect();
+    let instance = Instance::round_trip(labels, &cells);
+    let begun = Instant::now();
+    let bound = bind(&check(&parse(TEXT).tree).0, &instance, &BTreeMap::new()).unwrap();
+    let bound_after = begun.elapsed();
+    let before = memory("VmRSS");
+    let begun = Instant::now();
+    let limits = Limits { nonzeros: 4_000_000 };
+    let (model, _) = Expansion::new(bound, &BTreeMap::new(), limits).finish().unwrap();
+    let expanded = begun.elapsed();
+    let (peak, after) = (memory("VmHWM"), memory("VmRSS"));
+    let begun = Instant::now();
+    let text = model::mps::write(&model).unwrap().text;
+    let written = begun.elapsed();
+    println!(
+        "{} non-zeros: bound in {bound_after:?}, expanded in {expanded:?}, written as {} MB of MPS in {written:?}; \
+         memory {before} MB before, {after} MB after, {peak} MB at most",
+        model.statistics().nonzeros,
+        text.len() >> 20,
+    );
+    assert!(expanded <= written, "{expanded:?} to expand, {written:?} to write");
+}

@@ -1,6 +1,7 @@
 //! The lexer: text to tokens. It never fails; what it does not know becomes
 //! [`Kind::Unknown`], which the parser names in its message.
 
+pub(crate) mod cases;
 mod foreign;
 mod macros;
 mod phrase;

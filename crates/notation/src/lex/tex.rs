@@ -193,6 +193,7 @@ impl Lexer<'_> {
                     inner.trim_matches(|c: char| c.is_whitespace() || "()$".contains(c)).to_owned();
                 self.push_text(Kind::Tag, start, end, text);
             }
+            "begin" if matches!(inner, "cases" | "dcases") => self.cases(inner, start),
             "begin" => {
                 self.begin(inner);
                 self.push_text(Kind::Break, start, self.at, "display".to_owned());
@@ -390,7 +391,7 @@ impl Lexer<'_> {
     }
 
     /// The tokens of an argument; a line break in it separates as a comma does.
-    fn relex(&mut self, inner: &str, offset: usize) {
+    pub(super) fn relex(&mut self, inner: &str, offset: usize) {
         if self.depth > 8 {
             return self.push(Kind::Unknown, offset, offset + inner.len());
         }

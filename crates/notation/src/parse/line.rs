@@ -49,6 +49,7 @@ impl Parser<'_> {
     /// One statement; `x ≥ 0 and integer` is two.
     pub(super) fn one_statement(&mut self) -> Read<Vec<Line>> {
         let start = self.here();
+        self.cases.clear();
         let (left, links) = self.operands()?;
         if links.is_empty() {
             let at_end = matches!(self.peek(), T::End | T::ForAll);
@@ -75,7 +76,8 @@ impl Parser<'_> {
             let (before, last) = links.split_at(links.len() - 1);
             return Ok(vec![line(before.to_vec()), line(last.to_vec())]);
         }
-        Ok(vec![line(links)])
+        let line = line(links);
+        Ok(self.split_by_cases(line))
     }
 
     fn stray_punctuation(&mut self) {
@@ -109,7 +111,7 @@ impl Parser<'_> {
         }
         let Some(relation) = relation(self.peek()) else { return Ok(None) };
         self.bump();
-        let operand = self.range()?;
+        let operand = if self.at_cases() { self.cases()? } else { self.range()? };
         self.zero_or_one(relation, operand).map(Some)
     }
 

@@ -1,6 +1,7 @@
 //! The parser: tokens to a tree, by recursive descent. It never fails: a line that cannot be
 //! read gives a diagnostic with its place and is skipped to its end.
 
+mod cases;
 mod compound;
 mod document;
 mod expression;
@@ -57,6 +58,7 @@ pub fn parse(text: &str) -> Parse {
         first: 0,
         in_statements: false,
         declared: BTreeSet::new(),
+        cases: Vec::new(),
         passing: Vec::new(),
         diagnostics: Vec::new(),
     };
@@ -105,6 +107,8 @@ struct Parser<'t> {
     in_statements: bool,
     /// The names that data and definitions declare.
     declared: BTreeSet<String>,
+    /// The cases of the statement at hand.
+    cases: Vec<cases::Case>,
     /// Sets that a quantifier defines in passing: `i ∈ M = {1,…,m}`.
     passing: Vec<Line>,
     diagnostics: Vec<Diagnostic>,

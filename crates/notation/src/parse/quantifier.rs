@@ -104,6 +104,7 @@ impl Parser<'_> {
             let comma = self.eat(T::Comma) || and && self.eat(T::And);
             let ends = matches!(self.peek(), T::End | T::ForAll | T::Period)
                 || self.peek().closes()
+                || self.at_mark(T::SuchThat)
                 || !comma && self.place.splits && self.at_bracketed_clause();
             let more = !ends
                 && (comma

@@ -51,9 +51,9 @@ fn sites_have_their_bounds() {
 #[test]
 fn capacities_are_read() {
     let Some(instance) = part("cap/cap41.txt", OR_LIBRARY, 1) else { return };
-    let text = "Capacities\ndata\n I  sites\n J  clients\n f_i ∀ i ∈ I\n c_{i,j} ∀ i ∈ I, j ∈ J\n d_j ∀ j ∈ J\n Q_i ∀ i ∈ I\n\
+    let text = "Capacities\ndata\n I  sites\n J  clients\n f_i ∀ i ∈ I\n c_{i,j} ∀ i ∈ I, j ∈ J\n d_j ∀ j ∈ J\n q_i ∀ i ∈ I\n\
         minimise\n Σ_{i ∈ I} f_i y_i + Σ_{i ∈ I, j ∈ J} c_{i,j} x_{i,j}\nsubject to\n Σ_{i ∈ I} x_{i,j} = 1 ∀ j ∈ J\n \
-        Σ_{j ∈ J} d_j x_{i,j} ≤ Q_i y_i ∀ i ∈ I (capacity)\n x_{i,j} ≤ y_i ∀ i ∈ I, j ∈ J (link)\n \
+        Σ_{j ∈ J} d_j x_{i,j} ≤ q_i y_i ∀ i ∈ I (capacity)\n x_{i,j} ≤ y_i ∀ i ∈ I, j ∈ J (link)\n \
         0 ≤ x_{i,j} ≤ 1 ∀ i ∈ I, j ∈ J\n y_i ∈ {0,1} ∀ i ∈ I\n";
     let found = value(&formulation(text, &instance), true);
     assert!(agree(found, 1_040_444.375, 1e-6), "{found}");

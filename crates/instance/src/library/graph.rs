@@ -296,7 +296,7 @@ impl Steiner {
             }
             _ => {}
         }
-        instance.set("T", Datum::Labels(self.terminals));
+        instance.set("R", Datum::Labels(self.terminals));
         if self.places.len() == graph.n {
             instance.points = Some(Points { places: self.places, geographic: false });
         }

@@ -46,9 +46,9 @@ pub(super) fn sites(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
             total_text(&capacities),
             total_text(&demands)
         ));
-        data.push(("Q", vector(capacities)));
+        data.push(("q", vector(capacities)));
     } else {
-        facts.push("The file leaves the capacities open, so there is no Q.".to_owned());
+        facts.push("The file leaves the capacities open, so there is no q.".to_owned());
     }
     data.extend([("f", vector(opening)), ("d", vector(demands)), ("c", matrix(costs, n))]);
     Some((instance(Reader::Sites, data), facts))
@@ -94,7 +94,7 @@ pub(super) fn medians(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
     let size = plural(n, "vertex", "vertices");
     let mut facts = vec![
         format!("{size}, {}, {p} to choose.", plural(m, "edge", "edges")),
-        "Every vertex is a site of I and a client of J; c is the length of the shortest path between them.".to_owned(),
+        "Every vertex is a site of I and a client of J; d is the length of the shortest path between them.".to_owned(),
     ];
     if again > 0 {
         facts.push(format!(
@@ -104,13 +104,16 @@ pub(super) fn medians(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
     }
     if apart > 0 {
         facts.push(format!(
-            "{} no path between them: no c there.",
+            "{} no path between them: no d there.",
             plural(apart, "pair has", "pairs have")
         ));
     }
     let data =
-        vec![("I", counted(n)), ("J", counted(n)), ("c", table), ("p", Datum::Number(p.into()))];
-    Some((instance(Reader::Medians, data), facts))
+        vec![("I", counted(n)), ("J", counted(n)), ("d", table), ("p", Datum::Number(p.into()))];
+    let mut found = instance(Reader::Medians, data);
+    found.assume("w", vector(vec![Number::ONE; n]));
+    facts.push("The weight w of each client is 1, as the file gives none.".to_owned());
+    Some((found, facts))
 }
 
 /// The ends of an edge and its length in parts.

@@ -5,13 +5,13 @@
 //! | `knapsack` | `n b`, then a line `p a` for each item; or `n`, lines `j p a`, then `b` | `J`, `p`, `a`, `b` |
 //! | `multi-knapsack` | OR-Library mknap | `I`, `J`, `p`, `a`, `b` |
 //! | `assignment` | OR-Library gap | `I`, `J`, `c`, `a`, `b` |
-//! | `sites` | OR-Library cap | `I`, `J`, `Q`, `f`, `d`, `c` |
-//! | `medians` | OR-Library pmed | `I`, `J`, `c` (shortest paths), `p` |
+//! | `sites` | OR-Library cap | `I`, `J`, `q`, `f`, `d`, `c` |
+//! | `medians` | OR-Library pmed | `I`, `J`, `d` (shortest paths), `p`, `w` |
 //! | `tardiness` | OR-Library wt | `J`, `p`, `w`, `d` |
 //! | `job-shop` | jobs by machine and duration | `J`, `M`, `K`, `m`, `p` |
 //! | `quadratic` | QAPLIB | `N`, `L`, `f`, `d` |
 //! | `graph` | DIMACS graphs for colouring | `V`, `E` |
-//! | `steiner` | SteinLib | `V`, `E`, `A`, `c`, `T`, `r` |
+//! | `steiner` | SteinLib | `V`, `E`, `A`, `c`, `R`, `r` |
 //! | `routing` | `n K Q`, then `q x y` for each stop, the depot first | `V`, `c`, `q`, `Q`, `K`, `r` |
 //!
 //! OR-Library: Beasley, Journal of the Operational Research Society 41, 1990, 1069-1072. QAPLIB:

@@ -62,14 +62,14 @@ fn assignment_and_sites() {
         ["6.25", "7.5", "30"]
     );
     let open = well("2 3\ncapacity 7.5\ncapacity 8\n10\n1 2\n20\n3 4\n30\n5 6.25\n", Reader::Sites);
-    assert!(open.instance.is_some_and(|instance| instance.get("Q").is_none()));
+    assert!(open.instance.is_some_and(|instance| instance.get("q").is_none()));
 }
 
 #[test]
 fn medians_lie_on_shortest_paths_and_the_last_length_counts() {
     let text = "4 4 2\n1 2 9\n2 3 4\n1 3 2\n2 1 5\n";
     let found = well(text, Reader::Medians);
-    assert_eq!([cell(&found, "c", &["1", "2"]), cell(&found, "c", &["1", "4"])], ["5", ""]);
+    assert_eq!([cell(&found, "d", &["1", "2"]), cell(&found, "d", &["1", "4"])], ["5", ""]);
     assert!(found.facts.iter().any(|fact| fact.contains("the last length counts")));
     assert!(
         found.facts.iter().any(|fact| fact.starts_with("6 pairs have no path")),

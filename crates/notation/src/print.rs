@@ -73,6 +73,9 @@ fn remark_text(remark: &str, wide: bool) -> String {
         format!("  {remark}")
     } else if first(&text) == Some(Token::Text) {
         text
+    } else if wide {
+        // a remark that only its two spaces make one: what opens a bracket and leaves it open
+        format!("  {remark}")
     } else {
         format!(", {remark}")
     }

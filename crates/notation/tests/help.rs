@@ -16,7 +16,8 @@ use std::collections::{BTreeMap, BTreeSet};
 use ::model::FamilyState;
 use common::{kitchen, shown};
 use hullward_notation::{
-    Diagnostic, Severity, assumed, bind, check, codes, help, line_column, model, parse, utf16_range,
+    Diagnostic, Expansion, Limits, Severity, assumed, bind, check, codes, help, line_column, model,
+    parse, utf16_range,
 };
 
 /// Codes that no text alone can give, each with what gives it.
@@ -31,7 +32,7 @@ const BY_OTHER_MEANS: [(&str, &str); 13] = [
     ("data.no-family", "a family that is switched and is not there"),
     ("data.unavailable", "a definition whose reason is told elsewhere"),
     ("data.unsound", "a formulation with errors that is bound all the same"),
-    ("size.steps", "minutes of work"),
+    ("size.steps", "a family that walks far for few rows, within a small limit"),
     ("size.indices", "a line of two hundred letters"),
     ("size.model", "more than four thousand million columns"),
 ];
@@ -137,6 +138,12 @@ fn what_no_short_text_shows_is_told_too() {
     assert!(switched("sets", 14).contains(&"subset.on-demand"));
     assert!(!switched("sets", 5).contains(&"subset.on-demand"));
     assert!(switched("others", 5).contains(&"data.no-family"));
+    let far = stops("", "  z_i ≥ 1 ∀ i ∈ V, k ∈ {1..1000} : k = 1 (one)\n");
+    let (checked, _) = check(&parse(&far).tree);
+    let bound = bind(&checked, &kitchen(), &BTreeMap::new()).unwrap();
+    let limits = Limits { nonzeros: 10 };
+    let stopped = Expansion::new(bound, &BTreeMap::new(), limits).finish().unwrap_err();
+    assert_eq!(stopped[0].code, "size.steps", "{stopped:?}");
     let (checked, _) = check(&parse("minimise\n  z\n").tree);
     let unsound = bind(&checked, &kitchen(), &BTreeMap::new()).unwrap_err();
     assert_eq!(unsound[0].code, "data.unsound");

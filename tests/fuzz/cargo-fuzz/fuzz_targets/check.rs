@@ -1,0 +1,4 @@
+//! libFuzzer on the target `check`.
+#![no_main]
+
+libfuzzer_sys::fuzz_target!(|bytes: &[u8]| hullward_tests_fuzz::targets::check(bytes));

@@ -1,0 +1,13 @@
+ROWS
+ N c
+ E r
+COLUMNS
+ x c 1 r 1
+RHS
+ RHS c -5 r 1e308
+RANGES
+ RNG r -2
+BOUNDS
+ FR B x
+ BV B x
+ENDATA

@@ -214,16 +214,24 @@ fn product(first: &Expression, rest: &[(Multiplicative, Expression)]) -> String 
     for (i, (operator, operand)) in rest.iter().enumerate() {
         let printed = factor(operand, i + 1 == rest.len());
         let close = matches!(operand.kind, Kind::Name(_) | Kind::Call(..) | Kind::Big(..));
+        let gap = if reads_as_a_label(&printed) { "" } else { " " };
         let _ = match operator {
             Multiplicative::Times if close => write!(out, " {printed}"),
-            Multiplicative::Times => write!(out, " · {printed}"),
-            Multiplicative::Over => write!(out, " / {printed}"),
+            Multiplicative::Times => write!(out, " ·{gap}{printed}"),
+            Multiplicative::Over => write!(out, " /{gap}{printed}"),
             Multiplicative::Cross => write!(out, " × {printed}"),
             Multiplicative::Intersection => write!(out, " ∩ {printed}"),
             Multiplicative::Modulo => write!(out, " mod {printed}"),
         };
     }
     out
+}
+
+/// Whether a factor in brackets would be taken for the label of its line behind white space:
+/// `(ab cd)`.
+fn reads_as_a_label(printed: &str) -> bool {
+    let plain = |c: char| c.is_alphanumeric() || " -'.’/:,".contains(c);
+    printed.strip_prefix('(').is_some_and(|rest| rest.trim_end_matches(')').chars().all(plain))
 }
 
 /// A factor; a sum may stand bare only at the end, for its body reaches that far.

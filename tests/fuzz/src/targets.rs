@@ -142,7 +142,7 @@ pub fn expand(bytes: &[u8]) {
 /// Every reader of instances.
 pub fn instance(bytes: &[u8]) {
     let text = text(bytes);
-    for reader in std::iter::once(None).chain(Reader::ALL.map(Some)) {
+    for reader in std::iter::once(None).chain(Reader::all().map(Some)) {
         let reading = instance::read(&text, reader);
         for complaint in &reading.complaints {
             assert!(in_text(&text, &complaint.span), "{complaint:?}");

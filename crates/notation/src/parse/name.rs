@@ -52,7 +52,7 @@ impl Parser<'_> {
 
     fn superscript(&mut self, name: &mut Name) -> Read<()> {
         if let Some(decoration) = self.decoration() {
-            if decoration != "'" {
+            if !decoration.starts_with('\'') {
                 name.text.push('^');
             }
             name.text.push_str(&decoration);

@@ -86,6 +86,12 @@ pub fn matches(
             matcher.taken.insert(id, (given.clone(), Found::Given));
         } else if instance.get(name).is_some() {
             matcher.taken.insert(id, (name.clone(), Found::Named));
+        } else if let Some(letters) = letters(name)
+            && instance.get(letters).is_some()
+            && !symbols.iter().any(|symbol| symbol.name == letters)
+        {
+            matcher.taken.insert(id, (letters.to_owned(), Found::Assumed));
+            matcher.reasons.insert(id, "the same letters, set in another way".to_owned());
         }
     }
     // tables first: their labels tell the sets apart
@@ -117,6 +123,13 @@ pub fn assumed(
         }
     }
     (all, notes)
+}
+
+/// `J` of `\mathcal J`: a name that is set in a type of its own; a bar or a hat is no type.
+fn letters(name: &str) -> Option<&str> {
+    let (command, letters) = name.split_once(' ')?;
+    let is_type = command.starts_with("\\math") || command == "\\boldsymbol";
+    (is_type && !letters.contains(' ')).then_some(letters)
 }
 
 struct Matcher<'m> {
@@ -341,5 +354,23 @@ mod tests {
             .replace("haul", "c");
         let lines = matched(SPLIT, &own, &[]);
         assert!(lines.iter().all(|line| line.found == Found::Named), "{lines:?}");
+    }
+
+    /// A paper's script letter is a table's plain one, unless the paper has both.
+    #[test]
+    fn a_script_letter_takes_the_plain_one() {
+        let found = |text: &str| {
+            let (checked, _) = crate::check(&crate::parse(text).tree);
+            let mut instance = Instance::new(instance::Reader::Blocks);
+            instance.set("J", Datum::Labels(vec!["a".to_owned(), "b".to_owned()]));
+            let found = matches(text, &checked, &instance, &BTreeMap::new());
+            found.into_iter().map(|line| (line.name, line.taken, line.found)).collect::<Vec<_>>()
+        };
+        let model =
+            "minimise\n  Σ_{j ∈ \\mathcal{J}} x_j\nsubject to\n  x_j ≥ 1  ∀ j ∈ \\mathcal{J}\n";
+        let lines = found(&format!("data\n  \\mathcal{{J}}\n{model}"));
+        assert_eq!((lines[0].1.as_deref(), lines[0].2), (Some("J"), Found::Assumed));
+        let lines = found(&format!("data\n  \\mathcal{{J}}\n  J\n{model}"));
+        assert_eq!(lines.iter().filter(|line| line.1.as_deref() == Some("J")).count(), 1);
     }
 }

@@ -393,6 +393,17 @@ fn a_name_without_indices_is_mended_to_a_domain_line() {
     assert!(found.is_empty(), "{mended}\n{found:?}");
 }
 
+/// Unit commitment as it is printed: `∀ g, t` after rows over `t ∈ T ∖ {1}`.
+#[test]
+fn an_index_that_sometimes_skips_an_element_runs_over_all() {
+    use hullward_notation::{check, parse};
+    let text = "data\n  G\n  T = {1..4}\n  a_g ∀ g ∈ G\nminimise\n  Σ_{g ∈ G} Σ_{t ∈ T} a_g u_{g,t}\n\
+        subject to\n  u_{g,t} − u_{g,t−1} ≤ v_{g,t}  ∀ g ∈ G, t ∈ T ∖ {1}  (start)\n  \
+        Σ_g u_{g,t} ≥ 1  ∀ t  (on)\n  u_{g,t}, v_{g,t} ∈ {0,1}  ∀ g, t\n";
+    let (_, found) = check(&parse(text).tree);
+    assert!(!found.iter().any(hullward_notation::Diagnostic::is_error), "{found:?}");
+}
+
 #[test]
 fn edges_named_by_one_letter() {
     let edges = "  E ⊆ V × V\n  w_e = 2 ∀ e ∈ E";

@@ -8,7 +8,7 @@ use super::usage::{children, of_clause, words};
 use crate::diagnostic::{Diagnostic, names as message};
 use crate::parse::needed;
 use crate::place::Span;
-use crate::syntax::{Clause, Expression, Formulation, Kind, Line, Name, Relation};
+use crate::syntax::{Additive, Clause, Expression, Formulation, Kind, Line, Name, Relation};
 
 /// A tree with nothing left unsaid, and what was assumed.
 pub(super) struct Completed {
@@ -250,7 +250,28 @@ fn uses(tree: &Formulation, names: &BTreeSet<String>) -> Uses {
     found
 }
 
-/// The one set over which an index runs wherever its set is said.
+/// Of two sets the one that holds the other; none where neither is the other less some elements.
+fn wider(one: Expression, other: &Expression) -> Option<Expression> {
+    if one.kind == other.kind || without(other).is_some_and(|whole| whole.kind == one.kind) {
+        return Some(one);
+    }
+    without(&one).is_some_and(|whole| whole.kind == other.kind).then(|| other.clone())
+}
+
+/// `T` of `T ∖ S`.
+fn without(set: &Expression) -> Option<&Expression> {
+    match &set.kind {
+        Kind::Additive(whole, less)
+            if less.iter().all(|(sign, _)| *sign == Additive::Difference) =>
+        {
+            Some(whole)
+        }
+        _ => None,
+    }
+}
+
+/// The one set over which an index runs wherever its set is said. Where it runs over all of a set
+/// in one place and over `T ∖ {1}` in another, that is the whole set.
 fn habits(tree: &Formulation, declared: &BTreeSet<String>) -> BTreeMap<String, Expression> {
     let mut found: BTreeMap<String, Option<Expression>> = BTreeMap::new();
     let mut see = |item: &Expression| {
@@ -262,9 +283,7 @@ fn habits(tree: &Formulation, declared: &BTreeSet<String>) -> BTreeMap<String, E
             return;
         }
         let known = found.entry(name.text.clone()).or_insert_with(|| Some(set.clone()));
-        if known.as_ref().is_some_and(|one| one.kind != set.kind) {
-            *known = None;
-        }
+        *known = known.take().and_then(|one| wider(one, set));
     };
     let lines = tree.data.iter().chain(&tree.definitions).chain(&tree.statements);
     lines.flat_map(|line| &line.clauses).flat_map(of_clause).for_each(&mut see);

@@ -155,7 +155,7 @@ impl Parser<'_> {
         if self.tokens[open..last].iter().any(computes) {
             return None;
         }
-        if open == self.at || !gap.has(Gap::SPACE) {
+        if open == self.at || !gap.has(Gap::SPACE) || wants_operand(self.tokens[open - 1].kind) {
             return None;
         }
         let span = Span { start: self.tokens[open].span.start, end: self.tokens[last].span.end };
@@ -170,6 +170,12 @@ impl Parser<'_> {
         self.end = open;
         Some(Label { text: inner.to_owned(), span })
     }
+}
+
+/// Whether an operand must follow, so that what stands in brackets is one and no label. A sign
+/// may end a domain: `ℤ_+ (whole)`.
+fn wants_operand(kind: T) -> bool {
+    kind.is_operator() && !matches!(kind, T::Plus | T::Minus)
 }
 
 /// Letters, digits and the marks of names. Set apart behind a quantifier, where nothing can be

@@ -275,6 +275,8 @@ mod tests {
         assert_eq!(label("x ≤ k (n − 1)"), None);
         assert_eq!(label("x ≤ k (n-1)"), None);
         assert_eq!(label("x ≤ k (n)"), None);
+        assert_eq!(label("x ≤ k mod (n / 10)"), None, "an operator wants it");
+        assert_eq!(label("x ≤ k · (ab cd)"), None);
         assert_eq!(label("x ≤ 1 ∀ i ∈ V (a)").as_deref(), Some("a"));
         assert_eq!(label("x ≤ 1 ∀ l ∈ T  (l,S)").as_deref(), Some("l,S"));
         assert_eq!(label("x ≤ 1 (leave) \\tag{7}").as_deref(), Some("7"), "the tag wins");

@@ -15,7 +15,7 @@ pub(crate) fn statistics(sentences: &[String]) -> Html {
         return Html::default();
     }
     html! {
-        <details class="twin small" data-testid="statistics">
+        <details class="folded small" data-testid="statistics">
             <summary>{ "Numbers in short" }</summary>
             <ul class="facts">for said in sentences.iter() { <li>{ said.clone() }</li> }</ul>
         </details>

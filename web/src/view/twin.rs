@@ -49,7 +49,7 @@ pub(crate) fn Twin(props: &TwinProps) -> Html {
     };
     let nodes = of(u64::from(props.made), "node");
     html! {
-        <details class="twin small" data-testid="twin" {ontoggle}>
+        <details class="folded twin small" data-testid="twin" {ontoggle}>
             <summary>{ format!("{nodes} as a list") }</summary>
             if *open { <List ..props.copy() /> }
         </details>

@@ -24,7 +24,7 @@ async fn an_example_is_read_while_it_is_changed() -> Outcome<()> {
         guide_shows(browser, "ul", "Families over subsets").await?;
         guide_shows(browser, "[data-testid=typeset]", "people").await?;
         let field = browser.select(&format!("{} textarea", part("A", "guide"))).await?;
-        browser.paste(&field, "minimise\n  z\nsubject to\n  z ≥ 1  (one)\n").await?;
+        browser.paste(&field, "minimise\n  z + 2 w\nsubject to\n  z ≥ 1  (one)\n").await?;
         guide_shows(browser, "[data-testid=notation-remarks]", "not declared").await?;
         // A mend that is one click away, and the way back.
         browser

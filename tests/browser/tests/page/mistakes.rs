@@ -183,7 +183,8 @@ async fn a_link_cut_in_half_says_what_to_do() -> Outcome<()> {
 }
 
 /// Five megabytes that are no table: the page keeps them, and answers within two seconds, or, on
-/// a machine with other work, before the browser has laid out as many lines in a bare box.
+/// a machine with other work, within half as long again as the browser takes to lay out as many
+/// lines in a bare box.
 #[tokio::test(flavor = "multi_thread")]
 async fn noise_of_five_megabytes_is_answered_soon() -> Outcome<()> {
     visit(Source::File, async |browser| {
@@ -222,7 +223,7 @@ async fn noise_of_five_megabytes_is_answered_soon() -> Outcome<()> {
         ";
         let said = browser.script_async(paste_noise, vec![serde_json::to_value(&field)?]).await?;
         let (answered, laid) = (said[0].as_f64(), said[1].as_f64());
-        let soon = |took| took <= 2_000.0 || laid.is_some_and(|laid| took <= laid);
+        let soon = |took| took <= 2_000.0 || laid.is_some_and(|laid| took <= 1.5 * laid);
         assert!(answered.is_some_and(soon), "{said}");
         assert_ne!(said[3], "", "what to do is said");
         assert_eq!(said[2], 5_000_000, "the text stays");

@@ -211,9 +211,9 @@ async fn a_violated_row_is_added_by_hand() -> Outcome<()> {
         // The labels have no family on demand: their sets are shown, and that they are not added.
         browser.shows("cannot be added by hand").await?;
         paste(browser, SUBTOURS).await?;
-        browser.shows("14 stops").await?;
+        browser.shows("26 stops").await?;
         status(browser, "A", "root solved").await?;
-        for _ in 0..12 {
+        for _ in 0..24 {
             press_in(browser, "A", "step").await?;
             status(browser, "A", "paused").await?;
             if add_a_row(browser, "A").await? {

@@ -404,6 +404,29 @@ fn an_index_that_sometimes_skips_an_element_runs_over_all() {
     assert!(!found.iter().any(hullward_notation::Diagnostic::is_error), "{found:?}");
 }
 
+/// Precedence variables (Gouveia & Pires 1999) were told that their M is too small by one.
+#[test]
+fn precedence_between_0_and_1_is_no_position() {
+    let codes = |most: u32| {
+        let text = format!(
+            "data\n  V\nminimise\n  Σ_{{i ∈ V}} Σ_{{j ∈ V}} x_{{i,j}}\nsubject to\n  \
+             Σ_{{j ∈ V}} x_{{i,j}} = 1 ∀ i ∈ V (leave)\n  \
+             v_i − v_j + {most} x_{{i,j}} ≤ {most} ∀ i, j ∈ V : i ≠ j (order)\n  \
+             x_{{i,j}} ∈ {{0,1}} ∀ i, j ∈ V\n  0 ≤ v_i ≤ {most} ∀ i ∈ V\n"
+        );
+        let mut instance = instance::Instance::new(instance::Reader::Blocks);
+        let labels = ["a", "b", "c"].iter().map(|&name| name.to_owned()).collect();
+        instance.set("V", instance::Datum::Labels(labels));
+        let none = std::collections::BTreeMap::new();
+        let (_, found) =
+            hullward_notation::model(&text, &instance, &none, &std::collections::BTreeMap::new())
+                .unwrap();
+        found.iter().map(|one| one.code).collect::<Vec<_>>()
+    };
+    assert!(!codes(1).contains(&"lint.order-step"), "{:?}", codes(1));
+    assert!(codes(3).contains(&"lint.order-step"), "{:?}", codes(3));
+}
+
 #[test]
 fn edges_named_by_one_letter() {
     let edges = "  E ⊆ V × V\n  w_e = 2 ∀ e ∈ E";

@@ -176,7 +176,9 @@ fn too_small(subject: &Subject<'_>, family: usize, own: &[&Order]) -> Option<Dia
         let found = message::order_m(name, (&row, &allowed, &possible), span);
         return Some(with_more(subject.line(family), (variable, true), found));
     }
-    if own.iter().all(|order| order.step.is_zero() && short(order, &Number::ZERO)) {
+    // Between 0 and 1 stands who comes before whom, and no position: `v_k ≤ v_l` is what is meant.
+    let positions = difference(first)? > Number::ONE;
+    if positions && own.iter().all(|order| order.step.is_zero() && short(order, &Number::ZERO)) {
         let found = message::order_step(name, &row, span);
         return Some(with_more(subject.line(family), (variable, false), found));
     }

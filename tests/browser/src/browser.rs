@@ -206,6 +206,40 @@ impl Browser {
             .map_err(|error| fault(format!("nothing matches {selector}: {error}")))
     }
 
+    /// As [`Browser::select`], once it stands still: roots that are solved make the page above a
+    /// control longer, and a click in that moment would meet what stood there before.
+    ///
+    /// # Errors
+    /// As [`Browser::select`], or that it moves for long.
+    pub async fn still(&self, selector: &str) -> Outcome<Element> {
+        let mut before = Value::Null;
+        let begun = Instant::now();
+        loop {
+            let element = self.select(selector).await?;
+            let now = self.place(&element).await?;
+            if now == before && !now.is_null() {
+                return Ok(element);
+            }
+            if begun.elapsed() > SOON {
+                return Err(fault(format!("{selector} does not stand still")));
+            }
+            before = now;
+            sleep(BETWEEN_LOOKS).await;
+        }
+    }
+
+    /// Brings an element into view and says where it stands in the document and in the window.
+    async fn place(&self, element: &Element) -> Outcome<Value> {
+        let script = "const [element] = arguments; \
+                      if (!element.isConnected) return null; \
+                      element.scrollIntoView({ block: 'nearest' }); \
+                      const box = element.getBoundingClientRect(); \
+                      return [box.x, box.y, box.width, box.height, scrollY]";
+        let place = self.script_with(script, vec![serde_json::to_value(element)?]).await;
+        // The element may have been replaced since it was found.
+        Ok(place.unwrap_or(Value::Null))
+    }
+
     /// Puts a text into a field as a paste does: at once, with the event that pages hear.
     ///
     /// # Errors

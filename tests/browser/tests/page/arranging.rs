@@ -32,7 +32,7 @@ async fn rivals_are_renamed_and_moved_and_keep_their_runs() -> Outcome<()> {
         assert!(text(browser, "A", "status").await?.contains("closed"));
         assert_eq!(value(browser, "A", "root-bound").await?, bound);
         assert_eq!(text(browser, "A", "nodes").await?, nodes);
-        browser.select("[data-testid=undo]").await?.click().await?;
+        browser.still("[data-testid=undo]").await?.click().await?;
         browser.shows("B The strong one").await?;
         assert_eq!(text(browser, "B", "nodes").await?, nodes);
         button(browser, "B", "down").await?.click().await?;

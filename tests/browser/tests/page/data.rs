@@ -84,7 +84,7 @@ async fn foreign_headings_are_mapped_in_the_table() -> Outcome<()> {
         status(browser, "A", "root solved").await?;
         // Ashford alone: 62 + 31 + 24; the relaxation of split links opens it whole.
         assert_eq!(value(browser, "A", "root-bound").await?, Some(117.0));
-        browser.select("[data-testid=undo]").await?.click().await?;
+        browser.still("[data-testid=undo]").await?.click().await?;
         status(browser, "A", "could not be run").await
     })
     .await
@@ -104,7 +104,7 @@ async fn a_choice_of_data_runs_only_the_rivals_that_use_it() -> Outcome<()> {
             status(browser, letter, "root solved").await?;
             assert_eq!(value(browser, letter, "root-bound").await?, Some(bound), "{letter}");
         }
-        browser.select("[data-lane=B] [data-testid=run]").await?.click().await?;
+        browser.still("[data-lane=B] [data-testid=run]").await?.click().await?;
         status(browser, "B", "closed").await?;
         let choice = browser.select(&format!("{} select", line("f"))).await?;
         choice.select_by_value("permit").await?;
@@ -121,7 +121,7 @@ async fn two_instances_have_results_for_both() -> Outcome<()> {
         holds(browser, "[data-testid=instances]", "Tuesday").await?;
         browser.shows("3 stops, 6 drives").await?;
         status(browser, "B", "root solved").await?;
-        browser.select("[data-testid=run-instances]").await?.click().await?;
+        browser.still("[data-testid=run-instances]").await?.click().await?;
         // Monday A → B → C → A is 1 + 4 + 5 = 10, back 2 + 6 + 3 = 11; Tuesday symmetric:
         // A B D C A is 10 + 20 + 12 + 20 = 62, the best of its three rounds.
         for (day, best) in [(1, "10"), (2, "62")] {
@@ -137,10 +137,10 @@ async fn two_instances_have_results_for_both() -> Outcome<()> {
         browser.shows("4 stops, 12 drives").await?;
         let monday = "[data-testid=results] tbody:nth-of-type(1) tr:nth-child(2) td:nth-child(3)";
         holds(browser, monday, "10").await?;
-        browser.select("[data-testid=add-instance]").await?.click().await?;
+        browser.still("[data-testid=add-instance]").await?.click().await?;
         holds(browser, "[data-testid=instances]", "Instance 3").await?;
-        browser.select("[data-testid=remove-instance]").await?.click().await?;
-        browser.select("[data-testid=undo]").await?.click().await?;
+        browser.still("[data-testid=remove-instance]").await?.click().await?;
+        browser.still("[data-testid=undo]").await?.click().await?;
         holds(browser, "[data-testid=instances]", "Instance 3").await?;
         let titles = reopened(browser).await?;
         assert_eq!(titles, ["Monday", "Tuesday", "Instance 3"]);
@@ -152,8 +152,8 @@ async fn two_instances_have_results_for_both() -> Outcome<()> {
 /// Opens the page's own link anew, and the titles of the instances in it.
 async fn reopened(browser: &Browser) -> Outcome<Vec<String>> {
     browser.script("navigator.clipboard.writeText = () => Promise.reject(new Error('no'))").await?;
-    browser.select("[data-testid=copy-link]").await?.click().await?;
-    browser.select("[data-testid=copy-now]").await?.click().await?;
+    browser.still("[data-testid=copy-link]").await?.click().await?;
+    browser.still("[data-testid=copy-now]").await?.click().await?;
     let field = browser.select("[data-testid=link-field]").await?;
     let link = field.prop("value").await?.unwrap_or_default();
     let (_, hash) = link.split_once('#').unwrap_or_default();

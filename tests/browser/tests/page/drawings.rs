@@ -76,7 +76,7 @@ async fn lots_are_bars_by_period_and_another_drawing_can_be_chosen() -> Outcome<
         let bars = browser.select("[data-testid=bars]").await?.text().await?;
         assert!(bars.contains('x') && bars.contains("12"), "{bars}");
         let nodes = format!("{} summary", part("C", "twin"));
-        browser.select(&nodes).await?.click().await?;
+        browser.still(&nodes).await?.click().await?;
         let listed = async || Ok(!browser.find_all("treeitem", "").await?.is_empty());
         browser.until("the nodes are listed", SOON, listed).await?;
         browser.find_all("treeitem", "").await?[0].click().await?;

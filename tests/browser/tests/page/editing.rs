@@ -203,6 +203,7 @@ async fn commands_become_signs_and_tab_is_no_trap() -> Outcome<()> {
 #[tokio::test(flavor = "multi_thread")]
 async fn the_first_letters_of_a_name_in_scope_offer_the_name() -> Outcome<()> {
     visit(Source::Server, async |browser| {
+        status(browser, "A", "root solved").await?;
         let field = open(browser, "A").await?;
         let named = "data\n  I  depots\n  demand_i = 1  ∀ i ∈ I  pieces\nminimise\n  \
             Σ_{i ∈ I} demand_i x_i\nsubject to\n  x_i ≥ 0  ∀ i ∈ I\n  ";

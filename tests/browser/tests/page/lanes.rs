@@ -34,9 +34,9 @@ async fn said(browser: &Browser, letter: &str, word: &str) -> Outcome<bool> {
     Ok(text(browser, letter, "status").await?.contains(word))
 }
 
-/// A button of a lane.
+/// A button of a lane, once it stands still.
 pub(crate) async fn button(browser: &Browser, letter: &str, name: &str) -> Outcome<Element> {
-    browser.select(&part(letter, name)).await
+    browser.still(&part(letter, name)).await
 }
 
 /// Puts a text into the instance's box.
@@ -48,7 +48,7 @@ pub(crate) async fn paste(browser: &Browser, text: &str) -> Outcome<()> {
 /// Adds a rival from the catalogue.
 pub(crate) async fn add(browser: &Browser, id: &str) -> Outcome<()> {
     browser.select("[data-testid=catalogue]").await?.select_by_value(id).await?;
-    Ok(browser.select("[data-testid=add]").await?.click().await?)
+    Ok(browser.still("[data-testid=add]").await?.click().await?)
 }
 
 /// Pastes a round of so many scattered stops that its labels are searched for long, and waits for

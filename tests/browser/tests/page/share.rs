@@ -13,7 +13,7 @@ use crate::lanes::{paste, status, value};
 const SCENARIO: &str = include_str!("../../fixtures/nine-points.toml");
 
 pub(crate) async fn press(browser: &Browser, name: &str) -> Outcome<()> {
-    Ok(browser.select(&format!("[data-testid={name}]")).await?.click().await?)
+    Ok(browser.still(&format!("[data-testid={name}]")).await?.click().await?)
 }
 
 /// A scenario without what it says of its results.

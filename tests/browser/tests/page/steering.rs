@@ -145,10 +145,10 @@ async fn undo_brings_back_the_run_without_the_act() -> Outcome<()> {
             let what = "the run is led there";
             browser.until(what, SOON, async || Ok(figures(browser, "A").await? == *expected)).await
         };
-        browser.select("[data-testid=undo]").await?.click().await?;
+        browser.still("[data-testid=undo]").await?.click().await?;
         has_acts(browser, "A", 0).await?;
         same(&before).await?;
-        browser.select("[data-testid=redo]").await?.click().await?;
+        browser.still("[data-testid=redo]").await?.click().await?;
         has_acts(browser, "A", 1).await?;
         same(&closed).await?;
         press_named(browser, "Forget all acts in A").await?;

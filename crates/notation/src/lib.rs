@@ -25,6 +25,7 @@ mod latex;
 mod lex;
 mod linearise;
 mod lint;
+mod lists;
 mod matching;
 pub mod mathml;
 mod parse;

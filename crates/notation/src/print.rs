@@ -6,8 +6,9 @@ use std::fmt::Write as _;
 use dashu_int::{IBig, UBig};
 use model::Number;
 
-use crate::lex::lex;
 use crate::lex::token::Kind as Token;
+use crate::lex::{is_word_pair, lex};
+use crate::lists::Place;
 use crate::syntax::{
     Additive, Big, Clause, Expression, Formulation, Function, Kind, Line, Multiplicative, Name,
     NumberSet, Relation,
@@ -18,14 +19,15 @@ use crate::syntax::{
 pub fn print(tree: &Formulation) -> String {
     let mut out = String::new();
     if let Some(title) = &tree.title {
-        out.push_str(title);
-        out.push_str("\n\n");
+        // behind a backslash, a sign that begins a comment does not
+        let escape = if title.starts_with(['#', '%']) { "\\" } else { "" };
+        let _ = write!(out, "{escape}{title}\n\n");
     }
     part(&mut out, "data", &tree.data);
     part(&mut out, "definitions", &tree.definitions);
     if let Some(objective) = &tree.objective {
         let sense = if objective.maximise { "maximise" } else { "minimise" };
-        let _ = writeln!(out, "{sense}\n  {}", expression(&objective.expression));
+        let _ = writeln!(out, "{sense}\n  {}", at(&objective.expression, RANGE));
     }
     part(&mut out, "subject to", &tree.statements);
     out
@@ -37,7 +39,11 @@ fn part(out: &mut String, word: &str, lines: &[Line]) {
     }
     let _ = writeln!(out, "{word}");
     for (i, one) in lines.iter().enumerate() {
-        let printed = line(one, word == "data");
+        let place = if word == "subject to" { Place::Statement } else { Place::Described };
+        let mut printed = line(one, place, word == "data");
+        if let Some(length) = opens_part(&printed) {
+            printed = format!("\\mathit{{{}}}{}", &printed[..length], &printed[length..]);
+        }
         // a line that begins with an operator would go on with the one before
         if i > 0 && printed.starts_with(['−', '¬']) {
             out.push('\n');
@@ -46,14 +52,22 @@ fn part(out: &mut String, word: &str, lines: &[Line]) {
     }
 }
 
+/// The length of a name at the start of a line that would there open a part.
+fn opens_part(printed: &str) -> Option<usize> {
+    let tokens = lex(printed, 0);
+    let first = tokens.first()?;
+    matches!(first.kind, Token::Data | Token::Definitions).then_some(first.span.end as usize)
+}
+
 /// One line with its quantifier, label and remark; `wide` says that two spaces begin a remark.
-fn line(line: &Line, wide: bool) -> String {
-    let mut out = list(&line.left);
+fn line(line: &Line, place: Place, wide: bool) -> String {
+    let left = line.left.iter().map(|one| at(one, RANGE)).collect();
+    let mut out = place.apart(&[], &line.left, left, !line.links.is_empty()).join(", ");
     for (relation, operand) in &line.links {
         let _ = write!(out, " {} {}", sign(*relation), at(operand, RANGE));
     }
     for one in &line.clauses {
-        let _ = write!(out, "  ∀ {}", clause(one));
+        let _ = write!(out, "  ∀ {}", quantifier(one, place));
     }
     if let Some(label) = &line.label {
         let _ = write!(out, "  \\tag{{{}}}", label.text);
@@ -66,19 +80,14 @@ fn line(line: &Line, wide: bool) -> String {
 
 /// A remark in a spelling that reads back as one.
 fn remark_text(remark: &str, wide: bool) -> String {
-    let first = |text: &str| lex(text, 0).first().map(|token| token.kind);
-    let plain = first(remark) == Some(Token::Word) && !remark.contains(['#', '%', '\\']);
-    let text = format!("  \\text{{{remark}}}");
-    if wide && plain {
-        format!("  {remark}")
-    } else if first(&text) == Some(Token::Text) {
-        text
-    } else if wide {
-        // a remark that only its two spaces make one: what opens a bracket and leaves it open
-        format!("  {remark}")
-    } else {
-        format!(", {remark}")
-    }
+    let word = lex(remark, 0).first().is_some_and(|t| t.kind == Token::Word && t.span.start == 0);
+    let plain = wide && word && !remark.contains(['#', '%', '\\', '$', '\'']);
+    if plain { format!("  {remark}") } else { format!("  {}", crate::latex::remark(remark)) }
+}
+
+fn quantifier(clause: &Clause, place: Place) -> String {
+    let printed = |items: &[Expression]| items.iter().map(expression).collect();
+    place.clause(clause, &printed, " : ")
 }
 
 /// A clause of a quantifier: `(i,j) ∈ A : i ≠ r`.
@@ -214,6 +223,7 @@ fn product(first: &Expression, rest: &[(Multiplicative, Expression)]) -> String 
     for (i, (operator, operand)) in rest.iter().enumerate() {
         let printed = factor(operand, i + 1 == rest.len());
         let close = matches!(operand.kind, Kind::Name(_) | Kind::Call(..) | Kind::Big(..));
+        let close = close && !is_word_pair(&out, &printed);
         let gap = if reads_as_a_label(&printed) { "" } else { " " };
         let _ = match operator {
             Multiplicative::Times if close => write!(out, " {printed}"),

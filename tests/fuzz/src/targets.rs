@@ -78,17 +78,20 @@ pub fn check(bytes: &[u8]) {
     }
 }
 
-/// The three printers. That a text reads back as the same tree is held by the tests of notation on
-/// texts that nobody cut up; here what is printed is read again and must end.
+/// The three printers: what is printed as text or as LaTeX reads back as the same tree.
 pub fn print(bytes: &[u8]) {
     let text = text(bytes);
     let parsed = notation::parse(&text);
     for row in notation::typeset(&parsed.tree, &text).rows {
         assert!(in_text(&text, &row.span.range()));
     }
-    let _ = notation::parse(&notation::latex(&parsed.tree));
-    let printed = notation::print(&parsed.tree);
-    let _ = notation::print(&notation::parse(&printed).tree);
+    for printed in [notation::print(&parsed.tree), notation::latex(&parsed.tree)] {
+        let again = notation::parse(&printed);
+        if parsed.diagnostics.is_empty() {
+            assert!(again.diagnostics.is_empty(), "{printed}\n{:?}", again.diagnostics);
+            assert!(again.tree == parsed.tree, "{printed}");
+        }
+    }
 }
 
 /// An instance with drives, weights and periods.

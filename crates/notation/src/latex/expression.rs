@@ -4,6 +4,7 @@ use std::collections::BTreeSet;
 use std::fmt::Write as _;
 
 use super::name;
+use crate::lists::Place;
 use crate::print;
 use crate::syntax::{
     Additive, Big, Clause, Expression, Formulation, Function, Kind, Multiplicative, Name,
@@ -34,7 +35,24 @@ impl<'t> Printer<'t> {
         self.at(expression, ANY)
     }
 
-    pub(super) fn list(&self, items: &[Expression]) -> String {
+    /// What stands beside a relation, or alone as the objective.
+    pub(super) fn operand(&self, operand: &Expression) -> String {
+        self.at(operand, RANGE)
+    }
+
+    /// The operands to the left of a line.
+    pub(super) fn operands(&self, items: &[Expression], place: Place, followed: bool) -> String {
+        let printed = items.iter().map(|item| self.at(item, RANGE)).collect();
+        place.apart(&[], items, printed, followed).join(", ")
+    }
+
+    /// A clause at the end of a line.
+    pub(super) fn quantifier(&self, clause: &Clause, place: Place) -> String {
+        let printed = |items: &[Expression]| items.iter().map(|item| self.at(item, ANY)).collect();
+        place.clause(clause, &printed, " : ")
+    }
+
+    fn list(&self, items: &[Expression]) -> String {
         self.joined(items, ", ", ANY)
     }
 
@@ -44,7 +62,7 @@ impl<'t> Printer<'t> {
     }
 
     /// A clause of a quantifier.
-    pub(super) fn clause(&self, clause: &Clause) -> String {
+    fn clause(&self, clause: &Clause) -> String {
         let mut out = self.list(&clause.items);
         if !clause.such_that.is_empty() {
             let _ = write!(out, " : {}", self.list(&clause.such_that));

@@ -11,13 +11,12 @@ mod reserved;
 
 use std::fmt::Write as _;
 
-use crate::lex::lex;
-use crate::lex::token::Kind as Token;
+use crate::lists::Place;
 use crate::syntax::{Expression, Formulation, Kind, Line};
 use expression::Printer;
 pub(crate) use expression::{FACTOR, PRIMARY, PRODUCT, RANGE, SUM, level};
-pub(crate) use reserved::unescaped;
-use reserved::{escaped, escaped_text};
+use reserved::escaped;
+pub(crate) use reserved::{read_verbatim, remark, unescaped};
 
 /// The whole text, parts in their usual order. `O(tree · log)`.
 ///
@@ -35,7 +34,7 @@ pub fn latex(tree: &Formulation) -> String {
     let mut model = Vec::new();
     if let Some(objective) = &tree.objective {
         let sense = if objective.maximise { "maximise" } else { "minimise" };
-        let printed = first_of_objective(printer.expression(&objective.expression));
+        let printed = first_of_objective(printer.operand(&objective.expression));
         model.push(format!("\\text{{{sense}}}\\quad & {printed}"));
     }
     model.extend(part(&printer, "subject to", &tree.statements));
@@ -57,29 +56,30 @@ fn first_of_objective(printed: String) -> String {
 
 /// The rows of a part; its word stands in the first.
 fn part(printer: &Printer<'_>, word: &str, lines: &[Line]) -> Vec<String> {
+    let place = if word == "subject to" { Place::Statement } else { Place::Described };
     let rows = lines.iter().enumerate().map(|(at, one)| {
-        let row = line(printer, one);
+        let row = line(printer, one, place);
         if at == 0 { format!("\\text{{{word}}}\\quad & {row}") } else { format!("& {row}") }
     });
     rows.collect()
 }
 
 /// One line with its quantifier, tag and remark. Single spaces: two begin a remark.
-fn line(printer: &Printer<'_>, line: &Line) -> String {
-    let mut out = printer.list(&line.left);
+fn line(printer: &Printer<'_>, line: &Line, place: Place) -> String {
+    let mut out = printer.operands(&line.left, place, !line.links.is_empty());
     for (relation, operand) in &line.links {
         let _ = write!(out, " {}", printer.link(*relation, operand));
     }
     for (at, clause) in line.clauses.iter().enumerate() {
         let apart = if at == 0 { "&&" } else { "\\ " };
-        let _ = write!(out, " {apart} \\forall {}", printer.clause(clause));
+        let _ = write!(out, " {apart} \\forall {}", printer.quantifier(clause, place));
     }
     if let Some(label) = &line.label {
         let _ = write!(out, " \\tag{{{}}}", tag(&label.text));
     }
     if let Some(remark) = &line.remark {
         let apart = if line.clauses.is_empty() { "&& " } else { "\\quad " };
-        let _ = write!(out, " {apart}{}", remark_text(remark));
+        let _ = write!(out, " {apart}{}", reserved::remark(remark));
     }
     out
 }
@@ -88,18 +88,6 @@ fn line(printer: &Printer<'_>, line: &Line) -> String {
 fn tag(text: &str) -> String {
     let mathematics = text.contains(['\\', '_', '^']) && !text.contains('$');
     if mathematics { format!("${text}$") } else { text.to_owned() }
-}
-
-/// A remark in a spelling that reads back as one.
-fn remark_text(remark: &str) -> String {
-    let spellings =
-        [format!("\\text{{{}}}", escaped_text(remark)), format!("\\mathrm{{{remark}}}")];
-    let whole = |text: &String| {
-        let tokens = lex(text, 0);
-        matches!(&tokens[..], [one, end]
-            if one.kind == Token::Text && one.text == remark && end.kind == Token::End)
-    };
-    spellings.into_iter().find(whole).unwrap_or_else(|| format!(", {remark}"))
 }
 
 /// The names that are declared or carry indices: they are one name, however many letters.

@@ -86,3 +86,40 @@ fn remarks_and_titles_keep_what_tex_reserves() {
     let pasted = parse("R\\&D\n\\begin{align}\\min x\\end{align}").tree;
     assert_eq!(pasted.title.as_deref(), Some("R&D"));
 }
+
+/// Found by mutation: each of these was read, and what was printed of it was not the same.
+#[test]
+fn what_mutation_found_reads_back() {
+    let both = |text: &str| {
+        let parsed = parse(text);
+        assert!(parsed.diagnostics.is_empty(), "{text}: {:?}", parsed.diagnostics);
+        for out in [latex(&parsed.tree), crate::print(&parsed.tree)] {
+            let again = parse(&out);
+            assert!(again.diagnostics.is_empty(), "{out}\n{:?}", again.diagnostics);
+            assert_eq!(again.tree, parsed.tree, "{out}");
+        }
+    };
+    // a remark that no \text holds: a brace, a backslash, a dollar, a word of the language
+    for remark in ["a } b", "{ open", "costs \\$ 5", "for all", "\\text{ x", "', so ^ ~"] {
+        both(&format!("data\n  V    {remark}\nminimise\n  x\n"));
+    }
+    // a list whose last name of several letters would be taken for a remark
+    both("data\n  from,to,minutes\nminimise\n  x\n");
+    // titles that would be taken for comments, or that are too long once escaped
+    both("\\# 4\nminimise\n  x\n");
+    both(&format!("{}\nminimise\n  x\n", "&".repeat(300)));
+    // a relation in brackets, alone as the objective or in a list
+    both("minimise\n  (a x ≥ b)\n");
+    // two names that make one word of the language side by side
+    both("minimise\n  x\nsubject to\n  subject · to ≥ 1\n");
+}
+
+/// `|S| − 1 '''` was read as a power, with a name made of primes for its exponent.
+#[test]
+fn a_prime_behind_what_is_no_name_is_an_error() {
+    for line in ["|S| - 1 ''' ≤ 2", "(a + b)' ≤ 2", "2^{'} ≤ 1"] {
+        let parsed = parse(&format!("minimise\n  x\nsubject to\n  {line}\n"));
+        assert_eq!(parsed.diagnostics.len(), 1, "{line}");
+    }
+    printed("minimise\n  x\nsubject to\n  x' + y_i' + z_{i}^{\\prime} ≤ 2\n");
+}

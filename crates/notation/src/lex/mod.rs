@@ -344,6 +344,15 @@ fn such_that_short(rest: &str) -> Option<usize> {
     Some(found.len())
 }
 
+/// Whether the end of one text and the beginning of another, a space between, make one sign.
+pub(crate) fn is_word_pair(before: &str, after: &str) -> bool {
+    let start = before
+        .rfind(|c: char| !c.is_alphanumeric())
+        .map_or(0, |at| at + before[at..].chars().next().map_or(0, char::len_utf8));
+    let word = &before[start..];
+    pair(word, &format!("{word} {after}")).is_some()
+}
+
 /// A word that makes one sign with the word after it on the same line.
 fn pair(word: &str, rest: &str) -> Option<(Kind, usize)> {
     if word.len() > 8 {
@@ -353,7 +362,8 @@ fn pair(word: &str, rest: &str) -> Option<(Kind, usize)> {
     let after = &rest[word.len()..];
     let spaces = after.len() - after.trim_start_matches([' ', '\t', '~']).len();
     let next = &after[spaces..];
-    let end = next.find(|c: char| !c.is_alphanumeric()).unwrap_or(next.len());
+    let belongs = |c: char| c.is_alphanumeric() && table::sign(c).is_none();
+    let end = next.find(|c: char| !belongs(c)).unwrap_or(next.len());
     let next = &next[..end];
     let &(_, second, kind) =
         table::WORD_PAIRS.iter().find(|(a, b, _)| *a == lower && *b == next)?;

@@ -4,7 +4,7 @@ use super::phrase::{is_distinct, phrase};
 use super::table;
 use super::token::{Gap, Kind};
 use super::{Lexer, Start, lex, lex_from};
-use crate::latex::unescaped;
+use crate::latex::{read_verbatim, unescaped};
 
 impl Lexer<'_> {
     pub(super) fn backslash(&mut self) {
@@ -176,6 +176,9 @@ impl Lexer<'_> {
         let (inner, end) = argument.map_or(("", after), |(range, end)| (&text[range], end));
         self.at = end;
         match name {
+            "texttt" if !self.is_raised() => {
+                self.push_text(Kind::Text, start, end, read_verbatim(inner.trim()));
+            }
             "text" | "mbox" | "textrm" | "textit" | "textup" | "textbf" | "textsf" | "textsc"
             | "hbox" | "emph" | "textnormal" | "texttt" => self.text_argument(inner, start),
             "intertext" | "shortintertext" => {

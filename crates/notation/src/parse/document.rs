@@ -8,6 +8,9 @@ use crate::lex::token::{Gap, Kind as T};
 use crate::place::Span;
 use crate::syntax::{Expression, Formulation, Kind, Line, Objective, Section, Unread};
 
+/// How many characters of a remark are kept.
+const REMARK_LIMIT: usize = 1_000;
+
 /// The title, if the first line that holds anything is one, and the byte where the rest begins.
 pub(super) fn title(text: &str) -> (Option<String>, usize) {
     let mut start = 0;
@@ -17,7 +20,7 @@ pub(super) fn title(text: &str) -> (Option<String>, usize) {
             start += line.len();
             continue;
         }
-        if trimmed.len() > 400 || !is_title(trimmed) {
+        if unescaped(trimmed).len() > 400 || !is_title(trimmed) {
             return (None, start);
         }
         return (Some(unescaped(trimmed)), start + line.len());
@@ -277,6 +280,8 @@ impl Parser<'_> {
             self.text.get(from.span.start as usize + usize::from(comma)..to as usize)?
         };
         let text = text.split('\n').next().unwrap_or("").trim();
+        let end = text.char_indices().nth(REMARK_LIMIT).map_or(text.len(), |(at, _)| at);
+        let text = text[..end].trim();
         (!text.is_empty()).then(|| text.to_owned())
     }
 

@@ -217,6 +217,10 @@ impl Parser<'_> {
     fn power(&mut self) -> Read<Expression> {
         let start = self.here();
         let base = self.primary()?;
+        // a prime belongs to a name, and there it has been read
+        if self.peek() == T::Caret && self.at_prime(1) {
+            return Err(self.expected("an operator, and no prime behind what is no name"));
+        }
         if self.eat(T::Caret) {
             let exponent = self.grouped(Self::additive)?;
             // {0,1}^n, ℝ^n: how many there are is told by the indices

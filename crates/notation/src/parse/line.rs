@@ -72,9 +72,11 @@ impl Parser<'_> {
         };
         let worded = |link: &(Relation, Expression)| matches!(link.1.kind, Kind::NumberSet(_));
         let named = left.iter().all(|e| matches!(e.kind, Kind::Name(_)));
-        if named && links.len() > 1 && worded(&links[links.len() - 1]) {
-            let (before, last) = links.split_at(links.len() - 1);
-            return Ok(vec![line(before.to_vec()), line(last.to_vec())]);
+        let last = links.iter().rposition(|link| !worded(link)).map_or(1, |at| at + 1);
+        if named && last < links.len() {
+            let (before, sets) = links.split_at(last);
+            let sets = sets.iter().map(|set| vec![set.clone()]);
+            return Ok(std::iter::once(before.to_vec()).chain(sets).map(line).collect());
         }
         let line = line(links);
         Ok(self.split_by_cases(line))

@@ -71,15 +71,17 @@ impl Parser<'_> {
         Ok(())
     }
 
+    /// Whether a prime stands so many tokens ahead.
+    pub(super) fn at_prime(&self, by: usize) -> bool {
+        let token = self.tokens.get(self.at + by).filter(|_| self.at + by < self.end);
+        token.is_some_and(|t| t.kind == T::Word && t.text.chars().all(|c| c == '\''))
+    }
+
     /// What belongs to a name: `\max`, `\text{in}`, `+`, alone in the group.
     fn decoration(&mut self) -> Option<String> {
         let braced = usize::from(self.peek() == T::LeftBrace);
-        let prime = |by: usize| {
-            let token = self.tokens.get(self.at + by).filter(|_| self.at + by < self.end);
-            token.is_some_and(|t| t.kind == T::Word && t.text.chars().all(|c| c == '\''))
-        };
-        if prime(braced) {
-            let count = (braced..).take_while(|by| prime(*by)).count();
+        if self.at_prime(braced) {
+            let count = (braced..).take_while(|by| self.at_prime(*by)).count();
             let text: String =
                 (0..count).map(|k| self.tokens[self.at + braced + k].text.as_str()).collect();
             self.at += count + 2 * braced;

@@ -11,7 +11,7 @@ impl Parser<'_> {
         let start = self.here();
         match self.peek() {
             T::Number => self.number(),
-            T::Word => self.name(),
+            T::Word if !self.at_prime(0) => self.name(),
             T::LeftParen => self.parenthesis(),
             T::LeftBrace => self.braces(),
             T::LeftBracket => self.interval(),

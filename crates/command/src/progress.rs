@@ -34,6 +34,18 @@ impl Line {
         let _ = write!(std::io::stderr(), "\r\x1b[K{letter}: {}", words(moment));
     }
 
+    /// Shows what a study does, when it is time to.
+    pub(crate) fn say(&mut self, kind: &str, (doing, solved): &(String, u32), clock: &Clock) {
+        let now = clock.milliseconds();
+        if now < self.next || !std::io::stderr().is_terminal() {
+            return;
+        }
+        self.next = now + BETWEEN;
+        self.shown = true;
+        let solved = count(u64::from(*solved));
+        let _ = write!(std::io::stderr(), "\r\x1b[K{kind}: {doing} ({solved} models solved)");
+    }
+
     /// Wipes the line.
     pub(crate) fn wipe(&mut self) {
         if std::mem::take(&mut self.shown) {

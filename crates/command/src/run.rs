@@ -2,11 +2,13 @@
 
 use std::io::{Result, Write};
 
-use engine::native::{Phase, RivalRun, USUAL_SLICE, Watch, result, run_rival};
+use engine::StudyRun;
+use engine::native::{Phase, RivalRun, USUAL_SLICE, Watch, instance_title, result, run_rival};
 use record::event::Log;
 use record::file::{self, Parsed};
 use record::results::{RivalResult, Status, Timing};
-use record::scenario::{Scenario, letter};
+use record::scenario::{Scenario, Study, letter};
+use record::study::Report;
 
 use crate::clock::Clock;
 use crate::complain::complain;
@@ -76,8 +78,71 @@ impl Job<'_> {
             let results: Vec<RivalResult> = results.into_iter().map(|(_, one)| one).collect();
             table::print(&scenario, &results, out)?;
         }
-        self.left_out(&scenario, err)?;
+        if self.options.rival.is_none() {
+            ending = ending.max(self.studies(&scenario, (out, err))?);
+        }
+        if !self.options.json {
+            table::caution(out)?;
+        }
         Ok(ending)
+    }
+
+    /// Runs every study on every instance.
+    fn studies(
+        &self,
+        scenario: &Scenario,
+        (out, err): (&mut dyn Write, &mut dyn Write),
+    ) -> Result<Ending> {
+        let mut ending = Ending::Done;
+        for instance in 0..scenario.instances().count().max(1) {
+            let title = instance_title(scenario, instance);
+            for study in &scenario.studies {
+                let (reports, ended) = self.study(scenario, instance, study);
+                if ended == Ending::Limit {
+                    let (name, kind, seconds) =
+                        (&self.source.name, &study.kind, scenario.run.seconds);
+                    writeln!(
+                        err,
+                        "{name}: the study {kind} was stopped by the limit of {seconds} s"
+                    )?;
+                }
+                ending = ending.max(ended);
+                for report in &reports {
+                    if let Report::Left { kind, why } = report {
+                        writeln!(
+                            err,
+                            "{}: the study {kind} was left out: {why}",
+                            self.source.name
+                        )?;
+                        ending = ending.max(Ending::Wrong);
+                    }
+                    if self.options.json {
+                        serde_json::to_writer(&mut *out, &report.line(&title))?;
+                        writeln!(out)?;
+                        out.flush()?;
+                    } else {
+                        table::evidence(report, &title, out)?;
+                    }
+                }
+            }
+        }
+        Ok(ending)
+    }
+
+    /// One study, with a look at the clock between slices.
+    fn study(&self, scenario: &Scenario, instance: usize, study: &Study) -> (Vec<Report>, Ending) {
+        let clock = Clock::start();
+        let mut line = Line::new();
+        let mut run = StudyRun::new(scenario, instance, study);
+        while !run.advance(USUAL_SLICE) {
+            line.say(&study.kind, &run.doing(), &clock);
+            if clock.is_over(scenario.run.seconds) {
+                line.wipe();
+                return (Vec::new(), Ending::Limit);
+            }
+        }
+        line.wipe();
+        (run.take(), Ending::Done)
     }
 
     /// The places of the rivals to run.
@@ -152,15 +217,6 @@ impl Job<'_> {
             complain(err, of_rival, origin, &error.complaints)?;
         }
         writeln!(err, "{name}: rival {} could not be run: {}", one.rival, error.message)
-    }
-
-    fn left_out(&self, scenario: &Scenario, err: &mut dyn Write) -> Result<()> {
-        let kinds: Vec<&str> = scenario.studies.iter().map(|study| study.kind.as_str()).collect();
-        if kinds.is_empty() {
-            return Ok(());
-        }
-        let (name, kinds) = (&self.source.name, kinds.join(", "));
-        writeln!(err, "{name}: studies are not in this version; left out: {kinds}")
     }
 }
 

@@ -5,9 +5,11 @@ use std::io::{Result, Write};
 
 use record::results::{Proof, RivalResult, RootReport, SearchReport, Status};
 use record::scenario::Scenario;
+use record::study::Report;
 use report::explain;
 use report::number::{count, of, percent, short};
 use report::proof;
+use report::study::sections;
 
 /// Stands under every table.
 const CAUTION: &str = "\
@@ -72,6 +74,11 @@ pub(crate) fn print(
     if results.iter().any(|one| one.root.is_some()) {
         writeln!(out, "{LEGEND}")?;
     }
+    Ok(())
+}
+
+/// Prints what stands under everything.
+pub(crate) fn caution(out: &mut dyn Write) -> Result<()> {
     writeln!(out, "\n{CAUTION}")
 }
 
@@ -80,18 +87,45 @@ fn rows(group: &[&RivalResult], instance: &str, out: &mut dyn Write) -> Result<(
     writeln!(out, "{}{instance}", if instance.is_empty() { "" } else { "\n" })?;
     let mut table: Vec<Vec<String>> = vec![HEADINGS.map(str::to_owned).to_vec()];
     table.extend(group.iter().map(|one| cells(one)));
-    let widths: Vec<usize> = (0..HEADINGS.len())
+    columns(&table, &WORDS, out)
+}
+
+/// Prints rows with their columns under each other: words to the left, numbers to the right.
+fn columns(table: &[Vec<String>], words: &[usize], out: &mut dyn Write) -> Result<()> {
+    let count = table.first().map_or(0, Vec::len);
+    let widths: Vec<usize> = (0..count)
         .map(|column| table.iter().map(|row| row[column].chars().count()).max().unwrap_or(0))
         .collect();
-    for row in &table {
+    for row in table {
         let padded = row.iter().zip(&widths).enumerate().map(|(column, (cell, &width))| {
-            if WORDS.contains(&column) {
+            if words.contains(&column) {
                 format!("{cell:<width$}")
             } else {
                 format!("{cell:>width$}")
             }
         });
         writeln!(out, "{}", padded.collect::<Vec<_>>().join("  ").trim_end())?;
+    }
+    Ok(())
+}
+
+/// Prints what a study found.
+pub(crate) fn evidence(report: &Report, instance: &str, out: &mut dyn Write) -> Result<()> {
+    for section in sections(report) {
+        writeln!(out, "\n{}", section.heading)?;
+        if !instance.is_empty() {
+            writeln!(out, "on {instance}")?;
+        }
+        for sentence in &section.verdict {
+            writeln!(out, "{sentence}")?;
+        }
+        if let Some(table) = section.table {
+            let rows = [vec![table.head], table.rows].concat();
+            columns(&rows, &table.words, out)?;
+        }
+        for sentence in &section.notes {
+            writeln!(out, "{sentence}")?;
+        }
     }
     Ok(())
 }

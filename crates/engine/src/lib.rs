@@ -4,6 +4,7 @@
 //! |---|---|
 //! | [`Worker`] | one lane: requests in, slices of work, replies out |
 //! | [`native::run_rival`] | the same worker driven to its end without a page |
+//! | [`StudyRun`] | a study of all rivals of a scenario, in slices |
 //! | [`log_digest`] | one line that two machines can compare |
 //! | [`explanation`], [`explained`] | what the code of a complaint means, and the codes there are |
 //! | [`prepare`] | the model of a rival, for checks |
@@ -28,6 +29,7 @@ mod mps;
 pub mod native;
 mod outbox;
 mod readings;
+mod studies;
 mod warm;
 mod worker;
 
@@ -37,6 +39,7 @@ pub use handover::{HandOver, Refusal, latex, mps, notation_text};
 pub use left_out::left_out;
 pub use load::{describe, prepare};
 pub use mps::{looks_like_mps, mps_report};
+pub use studies::{KINDS, StudyRun};
 pub use worker::Worker;
 
 /// The version of the engine: it stands in saved logs, and beside saved results.

@@ -228,7 +228,7 @@ pub(crate) fn formulation(rival: &Rival) -> Result<(String, String), ErrorReport
     }
 }
 
-fn states(rival: &Rival) -> BTreeMap<String, FamilyState> {
+pub(crate) fn states(rival: &Rival) -> BTreeMap<String, FamilyState> {
     let states = rival.families.iter().map(|(family, state)| {
         let state = match state {
             record::scenario::FamilyState::In => FamilyState::In,

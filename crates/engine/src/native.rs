@@ -120,6 +120,7 @@ pub fn result(
     let given = scenario.rivals.get(rival);
     let mut result = RivalResult {
         scenario: scenario.title.clone(),
+        instance: instance_title(scenario, instance),
         rival: letter(rival),
         title: given.map_or_else(String::new, |rival| rival.title.clone()),
         root: run.root.clone(),
@@ -130,11 +131,6 @@ pub fn result(
         left_out: left_out(scenario, given, run),
         ..RivalResult::default()
     };
-    if !scenario.further_instances.is_empty() {
-        let title = scenario.instances().nth(instance).map(|text| text.title.clone());
-        let title = title.filter(|title| !title.is_empty());
-        result.instance = title.unwrap_or_else(|| format!("instance {}", instance + 1));
-    }
     if run.stopped && result.root.is_none() {
         result.error = None;
         result.search = None;
@@ -153,6 +149,17 @@ pub fn result(
         result.families = families(report, run.root.as_ref());
     }
     result
+}
+
+/// How results name an instance: empty where the scenario has no other.
+#[must_use]
+pub fn instance_title(scenario: &Scenario, instance: usize) -> String {
+    if scenario.further_instances.is_empty() {
+        return String::new();
+    }
+    let title = scenario.instances().nth(instance).map(|text| text.title.clone());
+    let title = title.filter(|title| !title.is_empty());
+    title.unwrap_or_else(|| format!("instance {}", instance + 1))
 }
 
 /// What was not done of what the scenario asks for.

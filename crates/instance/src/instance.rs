@@ -147,7 +147,7 @@ pub struct Instance {
     pub points: Option<Points>,
     /// The names that the text does not hold and the reader's habit supplies.
     pub assumed: BTreeSet<String>,
-    data: Vec<(String, Datum)>,
+    pub(crate) data: Vec<(String, Datum)>,
 }
 
 impl Instance {

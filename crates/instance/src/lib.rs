@@ -38,6 +38,7 @@ mod names;
 mod number;
 mod points;
 mod read;
+mod restrict;
 mod sniff;
 mod square;
 mod sums;

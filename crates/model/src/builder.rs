@@ -76,6 +76,12 @@ impl ModelBuilder {
         }
     }
 
+    /// Goes on where a finished model ends.
+    #[must_use]
+    pub fn from_model(model: Model) -> Self {
+        Self { model }
+    }
+
     /// The id of a label, added if it is new.
     pub fn label(&mut self, name: &str) -> LabelId {
         self.model.labels.intern(name)

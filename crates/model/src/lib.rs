@@ -31,6 +31,7 @@ pub mod mps;
 mod number;
 mod statistics;
 mod subset;
+mod variant;
 
 pub use builder::{ColumnSpec, ModelBuilder, ModelError};
 pub use id::{ColumnId, FamilyId, LabelId, NumberId, RowId, SubsetFamilyId, VariableId};

@@ -14,6 +14,7 @@
 //! | [`handover`] | a rival handed over to others |
 //! | [`wire`] | messages as bytes |
 //! | [`results`] | the JSON objects of `hullward run --json`, and their digest |
+//! | [`study`] | what studies find |
 //! | [`place`] | byte spans to line, column and UTF-16 units |
 //! | [`hash`] | a small stable hash |
 //!
@@ -31,5 +32,6 @@ pub mod opinion;
 pub mod place;
 pub mod results;
 pub mod scenario;
+pub mod study;
 pub mod typeset;
 pub mod wire;

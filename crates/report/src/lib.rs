@@ -10,6 +10,7 @@
 //! | [`map`] | places fitted to a frame, arcs, hulls |
 //! | [`opinion`] | our root beside what a second LP code says |
 //! | [`proof`] | what exact arithmetic proved of a bound, in words |
+//! | [`study`] | what studies found, as sections of words and tables |
 //! | [`labels`] | names beside their stops without collisions |
 //!
 //! Everything is pure and the same on every machine.
@@ -23,3 +24,4 @@ pub mod map;
 pub mod number;
 pub mod opinion;
 pub mod proof;
+pub mod study;

@@ -21,6 +21,7 @@ const ARROWS: &[(&str, &[&str])] = &[
     ("report", &["record"]),
     ("tree", &["lp", "model", "separate", "proof"]),
     ("catalogue", &["notation", "instance", "model"]),
+    ("study", &["model", "instance", "record", "notation", "proof", "tree", "catalogue"]),
     (
         "engine",
         &[
@@ -33,6 +34,7 @@ const ARROWS: &[(&str, &[&str])] = &[
             "proof",
             "tree",
             "catalogue",
+            "study",
         ],
     ),
     ("command", &["engine", "opinion", "report", "record"]),

@@ -1,11 +1,8 @@
 //! What the command says of rivals without a plan and without a bound.
 
-#![expect(clippy::expect_used, reason = "the helpers of these tests fail loudly")]
-
-use std::io::Write;
-use std::process::{Command, Output, Stdio};
-
 use serde_json::Value;
+
+use crate::launch::hullward;
 
 const INSTANCE: &str = "
 [instance]
@@ -44,20 +41,8 @@ subject to
     )
 }
 
-fn run(words: &[&str], input: &str) -> Output {
-    let mut child = Command::new(env!("CARGO_BIN_EXE_hullward"))
-        .args(words)
-        .stdin(Stdio::piped())
-        .stdout(Stdio::piped())
-        .stderr(Stdio::piped())
-        .spawn()
-        .expect("the command starts");
-    child.stdin.take().expect("piped").write_all(input.as_bytes()).expect("it reads");
-    child.wait_with_output().expect("it ends")
-}
-
 fn result(input: &str) -> Value {
-    let output = run(&["run", "--json", "-"], input);
+    let output = hullward(&["run", "--json", "-"], input);
     let text = String::from_utf8(output.stdout).expect("text");
     serde_json::from_str(text.lines().next().unwrap_or_default()).expect("an object")
 }
@@ -71,7 +56,7 @@ fn a_depot_row_among_the_labels_is_named() {
     // Every stop is entered, so there is a circle; along it the labels cannot rise for ever.
     assert_eq!(result["conflict"]["families"], serde_json::json!(["enter", "order"]));
     assert_eq!(result["conflict"]["level"], "smallest");
-    let table = String::from_utf8(run(&["run", "-"], &wrong).stdout).expect("text");
+    let table = String::from_utf8(hullward(&["run", "-"], &wrong).stdout).expect("text");
     assert!(table.contains("(enter) and (order) cannot hold together; no smaller set"), "{table}");
 }
 
@@ -90,7 +75,7 @@ fn rows_of_an_infeasible_relaxation_are_named() {
     assert_eq!(result["status"], "infeasible");
     let rows = result["root"]["ray"].as_array().expect("rows");
     assert!(rows.iter().any(|row| row[0].as_str().is_some_and(|name| name.contains('['))));
-    let table = String::from_utf8(run(&["run", "-"], &wrong).stdout).expect("text");
+    let table = String::from_utf8(hullward(&["run", "-"], &wrong).stdout).expect("text");
     assert!(table.contains("No point satisfies these rows"), "{table}");
 }
 
@@ -103,6 +88,6 @@ fn the_direction_of_an_unbounded_relaxation_is_named() {
     assert_eq!(result["status"], "unbounded");
     let columns = result["root"]["ray"].as_array().expect("columns");
     assert!(columns.iter().any(|column| column[1].as_f64().is_some_and(|step| step != 0.0)));
-    let table = String::from_utf8(run(&["run", "-"], &free).stdout).expect("text");
+    let table = String::from_utf8(hullward(&["run", "-"], &free).stdout).expect("text");
     assert!(table.contains("falls without end along this direction: x["), "{table}");
 }

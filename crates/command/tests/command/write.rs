@@ -1,11 +1,8 @@
 //! `hullward write` and rivals in MPS, on the built command.
 
-#![expect(clippy::expect_used, reason = "the helpers of these tests fail loudly")]
-
-use std::io::Write;
-use std::process::{Command, Output, Stdio};
-
 use serde_json::Value;
+
+use crate::launch::hullward;
 
 /// Five stops; the shortest round trip by enumeration of all 24 is 15.
 const SCENARIO: &str = "\
@@ -47,19 +44,6 @@ BOUNDS
  UP BND y 9
 ENDATA
 ";
-
-fn hullward(words: &[&str], input: &str) -> Output {
-    let mut child = Command::new(env!("CARGO_BIN_EXE_hullward"))
-        .args(words)
-        .stdin(Stdio::piped())
-        .stdout(Stdio::piped())
-        .stderr(Stdio::piped())
-        .spawn()
-        .expect("the command starts");
-    // A call that is refused before it reads closes the pipe: that is no failure here.
-    let _ = child.stdin.take().expect("piped").write_all(input.as_bytes());
-    child.wait_with_output().expect("it ends")
-}
 
 /// Exit status, standard output and standard error.
 fn told(words: &[&str], input: &str) -> (i32, String, String) {

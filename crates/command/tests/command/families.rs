@@ -1,13 +1,11 @@
 //! Families over subsets from text to tree: the relaxation with a family on demand, the one with
 //! all its members written out, and the optimum, beside published values.
 
-#![expect(clippy::expect_used, reason = "the helpers of these tests fail loudly")]
-
 use std::fmt::Write as _;
-use std::io::Write as _;
-use std::process::{Command, Stdio};
 
 use serde_json::Value;
+
+use crate::launch::hullward;
 
 /// Whether two nodes are joined, the first being the lower.
 type Joined<'a> = &'a dyn Fn(usize, usize) -> bool;
@@ -32,7 +30,7 @@ fn run(instance: &str, text: &str, name: &str, written: bool) -> Outcome {
         )
         .expect("a text");
     }
-    let objects = hullward(&scenario);
+    let objects = objects(&scenario);
     assert_eq!(objects.len(), states.len(), "{scenario}");
     let number =
         |object: &Value, part: &str, field: &str| object[part][field].as_f64().expect("a number");
@@ -50,16 +48,8 @@ fn run(instance: &str, text: &str, name: &str, written: bool) -> Outcome {
     }
 }
 
-fn hullward(scenario: &str) -> Vec<Value> {
-    let mut child = Command::new(env!("CARGO_BIN_EXE_hullward"))
-        .args(["run", "-", "--json"])
-        .stdin(Stdio::piped())
-        .stdout(Stdio::piped())
-        .stderr(Stdio::piped())
-        .spawn()
-        .expect("the command starts");
-    child.stdin.take().expect("piped").write_all(scenario.as_bytes()).expect("it reads");
-    let output = child.wait_with_output().expect("it ends");
+fn objects(scenario: &str) -> Vec<Value> {
+    let output = hullward(&["run", "-", "--json"], scenario);
     let told = String::from_utf8_lossy(&output.stderr).into_owned();
     assert_eq!(output.status.code(), Some(0), "{told}\n{scenario}");
     let text = String::from_utf8(output.stdout).expect("text");
@@ -182,7 +172,7 @@ fn lots_have_an_integral_hull() {
         + &table("f", [12, 20, 16, 8])
         + &table("p", [3, 3, 3, 3])
         + &table("h", [1, 2, 1, 1]);
-    let text = include_str!("../../catalogue/formulations/lot/l-s.txt");
+    let text = include_str!("../../../catalogue/formulations/lot/l-s.txt");
     holds(&run(&instance, text, "\"l,S\"", true), 69.0, 69.0);
 }
 

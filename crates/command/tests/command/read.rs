@@ -1,22 +1,11 @@
 //! `hullward read`: files of several instances, what rivals take under other names, and the size
 //! of their models.
 
-#![expect(clippy::expect_used, reason = "the helpers of these tests fail loudly")]
-
-use std::io::Write;
-use std::process::{Command, Stdio};
+use crate::launch::hullward;
 
 /// What `hullward read -` prints of a text, and on standard error, with its status.
 fn read(text: &str) -> (String, String, i32) {
-    let mut child = Command::new(env!("CARGO_BIN_EXE_hullward"))
-        .args(["read", "-"])
-        .stdin(Stdio::piped())
-        .stdout(Stdio::piped())
-        .stderr(Stdio::piped())
-        .spawn()
-        .expect("the command starts");
-    child.stdin.take().expect("piped").write_all(text.as_bytes()).expect("it reads");
-    let output = child.wait_with_output().expect("it ends");
+    let output = hullward(&["read", "-"], text);
     let text = |bytes: Vec<u8>| String::from_utf8(bytes).expect("text");
     (text(output.stdout), text(output.stderr), output.status.code().expect("no signal"))
 }

@@ -1,23 +1,8 @@
 //! Pitfalls are told by the command with their code, and `hullward help CODE` says what it means.
 
-#![expect(clippy::expect_used, reason = "the helpers of these tests fail loudly")]
+use std::process::Output;
 
-use std::io::Write;
-use std::process::{Command, Output, Stdio};
-
-fn hullward(words: &[&str], input: &str) -> Output {
-    let mut child = Command::new(env!("CARGO_BIN_EXE_hullward"))
-        .args(words)
-        .stdin(Stdio::piped())
-        .stdout(Stdio::piped())
-        .stderr(Stdio::piped())
-        .spawn()
-        .expect("the command is built");
-    let mut stdin = child.stdin.take().expect("it is piped");
-    stdin.write_all(input.as_bytes()).expect("it reads");
-    drop(stdin);
-    child.wait_with_output().expect("it ends")
-}
+use crate::launch::hullward;
 
 fn out(output: &Output) -> String {
     String::from_utf8_lossy(&output.stdout).into_owned()

@@ -1,0 +1,20 @@
+//! The built command as a user calls it.
+
+#![allow(clippy::expect_used, reason = "the helpers of these tests fail loudly")]
+
+#[path = "command/calls.rs"]
+mod calls;
+#[path = "command/codes.rs"]
+mod codes;
+#[path = "command/explanations.rs"]
+mod explanations;
+#[path = "command/families.rs"]
+mod families;
+#[path = "command/launch.rs"]
+mod launch;
+#[path = "command/read.rs"]
+mod read;
+#[path = "command/studies.rs"]
+mod studies;
+#[path = "command/write.rs"]
+mod write;

@@ -1,0 +1,144 @@
+//! A part of an instance: fewer stops, sites, items or periods, everything else as it is.
+
+use std::collections::{BTreeMap, BTreeSet};
+
+use crate::instance::{Datum, Instance, Points};
+
+impl Instance {
+    /// The instance with the first `count` elements of each of its sets, and of those only what
+    /// is said of them. A set that lies within another one keeps what is left of it; an element
+    /// that the instance names (a depot) stays. Labels that stand in no set are taken as one,
+    /// in the order in which they come. Numbers stay as they are.
+    #[must_use]
+    pub fn first(&self, count: usize) -> Self {
+        let kept = Kept::of(self, count);
+        let mut part = self.clone();
+        for (_, datum) in &mut part.data {
+            kept.restrict(datum);
+        }
+        part.points = self.points.as_ref().map(|points| Points {
+            places: (self.stops().iter().zip(&points.places))
+                .filter(|(stop, _)| kept.has(stop))
+                .map(|(_, place)| *place)
+                .collect(),
+            geographic: points.geographic,
+        });
+        part
+    }
+
+    /// The number of elements of the largest set.
+    #[must_use]
+    pub fn extent(&self) -> usize {
+        sets(self).iter().map(Vec::len).max().unwrap_or(0)
+    }
+}
+
+/// Labels that stay.
+struct Kept(BTreeSet<String>);
+
+impl Kept {
+    fn of(instance: &Instance, count: usize) -> Self {
+        let sets = sets(instance);
+        let mut kept = BTreeSet::new();
+        for (place, set) in sets.iter().enumerate() {
+            let within = |other: usize| {
+                let larger = sets[other].len() > set.len()
+                    || (sets[other].len() == set.len() && other < place);
+                larger && set.iter().all(|label| sets[other].contains(label))
+            };
+            if !(0..sets.len()).any(|other| other != place && within(other)) {
+                kept.extend(set.iter().take(count).cloned());
+            }
+        }
+        for (_, datum) in instance.data() {
+            if let Datum::Element(label) = datum {
+                kept.insert(label.clone());
+            }
+        }
+        Self(kept)
+    }
+
+    fn has(&self, label: &str) -> bool {
+        self.0.contains(label)
+    }
+
+    fn all(&self, tuple: &[String]) -> bool {
+        tuple.iter().all(|label| self.has(label))
+    }
+
+    fn restrict(&self, datum: &mut Datum) {
+        match datum {
+            Datum::Labels(labels) => labels.retain(|label| self.has(label)),
+            Datum::Integers(integers) => integers.retain(|integer| self.has(&integer.to_string())),
+            Datum::Tuples { rows, .. } => rows.retain(|row| self.all(row)),
+            Datum::Table { cells, .. } => cells.retain(|tuple, _| self.all(tuple)),
+            Datum::Number(_) | Datum::Element(_) => {}
+        }
+    }
+}
+
+/// The sets of an instance, and last the labels that stand in tuples and in no set.
+fn sets(instance: &Instance) -> Vec<Vec<String>> {
+    let named = instance.data().filter_map(|(_, datum)| match datum {
+        Datum::Labels(labels) => Some(labels.clone()),
+        Datum::Integers(integers) => Some(integers.iter().map(i64::to_string).collect()),
+        _ => None,
+    });
+    let mut sets: Vec<Vec<String>> = named.collect();
+    let mut known: BTreeMap<String, ()> =
+        sets.iter().flatten().map(|label| (label.clone(), ())).collect();
+    let mut further = Vec::new();
+    let mut note = |label: &String| {
+        if known.insert(label.clone(), ()).is_none() {
+            further.push(label.clone());
+        }
+    };
+    for (_, datum) in instance.data() {
+        match datum {
+            Datum::Tuples { rows, .. } => rows.iter().flatten().for_each(&mut note),
+            Datum::Table { cells, .. } => cells.keys().flatten().for_each(&mut note),
+            _ => {}
+        }
+    }
+    sets.push(further);
+    sets
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::{Reader, read};
+
+    #[test]
+    fn a_round_trip_keeps_its_first_stops_and_its_depot() {
+        let text = "\tA\tB\tC\tD\nA\t\t1\t2\t3\nB\t4\t\t5\t6\nC\t7\t8\t\t9\nD\t1\t2\t3\t\n";
+        let instance = read(text, None).instance.unwrap_or_else(|| Instance::new(Reader::Matrix));
+        assert_eq!(instance.extent(), 4);
+        let mut part = instance.first(3);
+        assert_eq!(part.stops(), ["A", "B", "C"]);
+        let matrix = part.matrix();
+        assert_eq!((matrix.len(), matrix.iter().flatten().count()), (9, 6));
+        let drives = |part: &Instance| match part.get("A") {
+            Some(Datum::Tuples { rows, .. }) => rows.len(),
+            _ => 0,
+        };
+        assert_eq!(drives(&part), 6);
+        // The depot stays where it is not among the first.
+        let mut last = instance.clone();
+        last.set("r", Datum::Element("D".to_owned()));
+        part = last.first(2);
+        assert_eq!(part.stops(), ["A", "B", "D"]);
+    }
+
+    #[test]
+    fn a_set_within_another_keeps_what_is_left_and_periods_are_cut() {
+        let mut instance = Instance::new(Reader::Blocks);
+        let labels = |names: &[&str]| Datum::Labels(names.iter().map(|&n| n.to_owned()).collect());
+        instance.set("V", labels(&["a", "b", "c", "d"]));
+        instance.set("K", labels(&["d", "b"]));
+        instance.set("T", Datum::Integers((1..=9).collect()));
+        let part = instance.first(3);
+        assert_eq!(part.get("K"), Some(&labels(&["b"])));
+        assert_eq!(part.get("T"), Some(&Datum::Integers(vec![1, 2, 3])));
+    }
+}

@@ -1,0 +1,107 @@
+//! What studies find: the objects of `hullward run --json` that begin with `"study"`. Field names
+//! are fixed; new ones may be added. They are also sent between workers, so no field is left out.
+
+mod equivalence;
+mod families;
+mod ladder;
+mod numerics;
+mod order;
+mod tightening;
+
+use serde::{Deserialize, Serialize, Serializer};
+
+pub use equivalence::{
+    Counterexample, Equivalence, EquivalenceKind, EquivalenceLevel, Evidence, Mutant,
+};
+pub use families::{Families, FamilyShare, IntegralityShare, RivalFamilies};
+pub use ladder::{Ladder, RivalLadder, Rung};
+pub use numerics::{FamilyNumerics, Numerics, RivalNumerics};
+pub use order::{Certificate, Order, OrderLevel, Relation};
+pub use tightening::{FamilyTightening, RivalTightening, Tightening};
+
+/// What one study found, or one pair of rivals in it.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub enum Report {
+    /// The bound ladder of each rival.
+    Ladder(Ladder),
+    /// Where each rival's bound comes from.
+    Families(Families),
+    /// Whether two rivals are the same problem.
+    Equivalence(Box<Equivalence>),
+    /// Which of two rivals has the stronger relaxation.
+    Order(Order),
+    /// How much the coefficients of binaries can be tightened, and what that buys.
+    Tightening(Tightening),
+    /// Coefficients: their range, and how much can leak through them.
+    Numerics(Numerics),
+    /// A study that could not be made, and why.
+    Left {
+        /// Its kind.
+        kind: String,
+        /// Why.
+        why: String,
+    },
+}
+
+impl Report {
+    /// The kind, as a scenario names it.
+    #[must_use]
+    pub fn kind(&self) -> &str {
+        match self {
+            Self::Ladder(_) => "ladder",
+            Self::Families(_) => "families",
+            Self::Equivalence(_) => "equivalence",
+            Self::Order(_) => "order",
+            Self::Tightening(_) => "tightening",
+            Self::Numerics(_) => "numerics",
+            Self::Left { kind, .. } => kind,
+        }
+    }
+
+    /// The object with its kind and, where there are several, its instance, as JSON has it.
+    #[must_use]
+    pub fn line<'a>(&'a self, instance: &'a str) -> Line<'a> {
+        Line { report: self, instance }
+    }
+}
+
+/// A report as `hullward run --json` prints it.
+#[derive(Debug, Clone, Copy)]
+pub struct Line<'a> {
+    report: &'a Report,
+    instance: &'a str,
+}
+
+impl Serialize for Line<'_> {
+    fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
+        match self.report {
+            Report::Ladder(report) => self.named(report, serializer),
+            Report::Families(report) => self.named(report, serializer),
+            Report::Equivalence(report) => self.named(report.as_ref(), serializer),
+            Report::Order(report) => self.named(report, serializer),
+            Report::Tightening(report) => self.named(report, serializer),
+            Report::Numerics(report) => self.named(report, serializer),
+            Report::Left { why, .. } => self.named(&LeftOut { left_out: why }, serializer),
+        }
+    }
+}
+
+impl Line<'_> {
+    fn named<T: Serialize, S: Serializer>(&self, report: &T, to: S) -> Result<S::Ok, S::Error> {
+        Named { study: self.report.kind(), instance: self.instance, report }.serialize(to)
+    }
+}
+
+#[derive(Serialize)]
+struct Named<'a, T> {
+    study: &'a str,
+    #[serde(skip_serializing_if = "str::is_empty")]
+    instance: &'a str,
+    #[serde(flatten)]
+    report: &'a T,
+}
+
+#[derive(Serialize)]
+struct LeftOut<'a> {
+    left_out: &'a str,
+}

@@ -1,0 +1,89 @@
+//! Which of two rivals has the stronger relaxation, and how far that is known.
+
+use serde::{Deserialize, Serialize};
+
+use super::Relation::Undecided;
+
+/// How the bound of the left rival stands to that of the right one.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub enum Relation {
+    /// Never weaker.
+    #[serde(rename = "⪰")]
+    NeverWeaker,
+    /// Never stronger.
+    #[serde(rename = "⪯")]
+    NeverStronger,
+    /// The same.
+    #[serde(rename = "=")]
+    Equal,
+    /// Neither dominates.
+    #[serde(rename = "∥")]
+    Incomparable,
+    /// Not known.
+    #[default]
+    #[serde(rename = "?")]
+    Undecided,
+}
+
+/// How far a relation is known.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "lowercase")]
+pub enum OrderLevel {
+    /// Proved in the literature.
+    Theorem,
+    /// Proved on this instance in exact arithmetic, for every objective in the shared variables.
+    Certified,
+    /// Seen on this instance and this objective.
+    Observed,
+    /// Not known.
+    #[default]
+    Undecided,
+}
+
+/// The order of two rivals.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct Order {
+    /// Their letters.
+    pub rivals: [String; 2],
+    /// The relation.
+    pub relation: Relation,
+    /// How far it goes.
+    pub level: OrderLevel,
+    /// Its source where it is a theorem; else in a sentence what it rests on.
+    pub source: String,
+    /// Their root bounds on this instance.
+    pub bounds: [Option<f64>; 2],
+    /// What was proved row by row: that the left relaxation lies within the right one, and the
+    /// other way round.
+    pub certificates: [Certificate; 2],
+}
+
+impl Default for Order {
+    fn default() -> Self {
+        Self {
+            rivals: [String::new(), String::new()],
+            relation: Undecided,
+            level: OrderLevel::Undecided,
+            source: String::new(),
+            bounds: [None, None],
+            certificates: [Certificate::default(), Certificate::default()],
+        }
+    }
+}
+
+/// Whether every row of one rival holds over the other's relaxation.
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
+pub struct Certificate {
+    /// `None` where it was not tried, and `why` says why.
+    pub holds: Option<bool>,
+    /// Rows and bounds that were maximised.
+    pub rows: u32,
+    /// Those of them that exact arithmetic proved to hold.
+    pub proved: u32,
+    /// A row that can be violated: an objective for which the other rival is weaker.
+    pub witness: String,
+    /// By how much.
+    pub violation: f64,
+    /// Why it was not tried, or not to the end.
+    pub why: String,
+}

@@ -1,0 +1,68 @@
+//! The strength order in words.
+
+use record::study::{Certificate, Order, OrderLevel, Relation};
+
+use super::{Section, Table, value};
+use crate::number::short;
+
+pub(super) fn section(order: &Order) -> Section {
+    let [a, b] = &order.rivals;
+    let mut table = Table::new(&["", "root bound", "rows proved over it"], &[0, 2]);
+    table.rows = (0..2)
+        .map(|side| {
+            let proved = rows(&order.certificates[side], &order.rivals[1 - side]);
+            vec![order.rivals[side].clone(), value(order.bounds[side]), proved]
+        })
+        .collect();
+    Section {
+        heading: format!("Which of {a} and {b} is stronger?"),
+        verdict: vec![verdict(order)],
+        table: Some(table),
+        notes: Vec::new(),
+    }
+}
+
+/// What was proved of the rows of `other` over this rival's relaxation.
+fn rows(certificate: &Certificate, other: &str) -> String {
+    match certificate.holds {
+        Some(true) => format!("all {} of {other}", certificate.rows),
+        Some(false) => {
+            let by = short(certificate.violation);
+            format!("not {} of {other}: it can be violated by {by}", certificate.witness)
+        }
+        None => format!("not tried: {}", certificate.why),
+    }
+}
+
+fn verdict(order: &Order) -> String {
+    let [a, b] = &order.rivals;
+    let relation = match order.relation {
+        Relation::NeverWeaker => format!("{a} ⪰ {b}: {a} is never weaker than {b}"),
+        Relation::NeverStronger => format!("{b} ⪰ {a}: {b} is never weaker than {a}"),
+        Relation::Equal => format!("{a} = {b}: their relaxations give the same bound"),
+        Relation::Incomparable => format!("{a} ∥ {b}: neither is always as strong as the other"),
+        Relation::Undecided => return format!("How {a} stands to {b} is undecided."),
+    };
+    let source = &order.source;
+    match order.level {
+        OrderLevel::Theorem => format!("{relation} – theorem: {source}."),
+        OrderLevel::Certified => {
+            format!(
+                "{relation}, for every objective in the shared variables – certified on this instance: {source}."
+            )
+        }
+        OrderLevel::Observed => observed(order),
+        OrderLevel::Undecided => format!("{relation}."),
+    }
+}
+
+/// Bounds of one instance say nothing of others.
+fn observed(order: &Order) -> String {
+    let [a, b] = &order.rivals;
+    let what = match order.relation {
+        Relation::Equal => format!("{a} and {b} have the same bound"),
+        Relation::NeverWeaker => format!("{a} has the stronger bound"),
+        _ => format!("{b} has the stronger bound"),
+    };
+    format!("{what} – observed on this instance and objective alone.")
+}

@@ -1,0 +1,33 @@
+//! Studies: what turns runs of rivals into evidence.
+//!
+//! | module | answers |
+//! |---|---|
+//! | [`mod@ladder`] | how far each step lifts a rival's bound |
+//! | [`mod@families`] | which constraint families the bound comes from |
+//! | [`court`] | whether two rivals are the same problem |
+//! | [`mod@order`] | which of two relaxations is stronger, and how far that is known |
+//! | [`mod@tightening`] | how small the coefficients of switches can be |
+//! | [`mod@numerics`] | how far coefficients range, and what leaks |
+//!
+//! A study takes [`Subject`]s, works at a [`Desk`] and gives a report of [`record::study`]; it runs in
+//! slices as a [`Running`]. No study reads a clock; limits are counts of nodes, rows and trials.
+
+pub mod court;
+pub mod desk;
+pub mod families;
+pub mod ladder;
+pub mod numerics;
+pub mod order;
+pub mod plan;
+mod propagate;
+pub mod shared;
+pub mod subject;
+pub mod tightening;
+mod words;
+
+pub use desk::{Desk, Running, Solved};
+pub use plan::Plan;
+pub use subject::{Source, Subject, model_of};
+
+#[cfg(test)]
+mod tests;

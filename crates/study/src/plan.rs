@@ -1,0 +1,49 @@
+//! What a scenario asks of a study: its limits and seeds.
+
+use tree::Settings;
+
+/// The limits and seeds of a study.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Plan {
+    /// Nodes at most for each search.
+    pub nodes: u32,
+    /// Every random choice derives from it.
+    pub seed: u64,
+    /// Random objectives of each sign that rivals are compared on.
+    pub duels: u32,
+    /// Plans of a sub-instance at most that are compared one by one.
+    pub plans: u32,
+    /// The sizes of sub-instances on which every plan is compared.
+    pub sizes: Vec<u32>,
+    /// The variables in which rivals are compared; found where none are named.
+    pub shared: Vec<String>,
+    /// Rows at most that are maximised over another relaxation, or over their own.
+    pub rows: u32,
+    /// A value of the objective that is known to be reachable.
+    pub best_known: Option<f64>,
+    /// Whether rivals are broken on purpose to see that it is noticed.
+    pub mutants: bool,
+}
+
+impl Default for Plan {
+    fn default() -> Self {
+        Self {
+            nodes: 5_000,
+            seed: 0,
+            duels: 12,
+            plans: 200,
+            sizes: vec![2, 3, 4, 5, 6],
+            shared: Vec::new(),
+            rows: 500,
+            best_known: None,
+            mutants: true,
+        }
+    }
+}
+
+impl Plan {
+    /// How a model is searched in this study.
+    pub(crate) fn search(&self) -> Settings {
+        Settings { node_limit: Some(self.nodes), seed: self.seed, ..Settings::default() }
+    }
+}

@@ -1,0 +1,70 @@
+//! What is studied: a rival with its model, and how to make the same model of less data.
+
+use std::collections::BTreeMap;
+use std::rc::Rc;
+
+use catalogue::Entry;
+use instance::Instance;
+use model::{FamilyState, Model};
+use notation::{Expansion, Limits, Progress};
+
+/// A rival of a study.
+#[derive(Debug, Clone)]
+pub struct Subject {
+    /// Its letter.
+    pub letter: String,
+    /// Its title.
+    pub title: String,
+    /// Its model on the instance.
+    pub model: Rc<Model>,
+    /// Its entry in the catalogue, where it is shipped.
+    pub entry: Option<Entry>,
+    /// Whether it is bounded and not compared for its optimum.
+    pub relaxation: bool,
+    /// Its notation and data; none where it came as a model.
+    pub source: Option<Source>,
+}
+
+/// From what a rival's model was made.
+#[derive(Debug, Clone)]
+pub struct Source {
+    /// Journal notation.
+    pub text: Rc<str>,
+    /// The data.
+    pub instance: Rc<Instance>,
+    /// Formulation's name → instance's name, where a person gave one.
+    pub bind: BTreeMap<String, String>,
+    /// The states of families that differ from the formulation's default.
+    pub states: BTreeMap<String, FamilyState>,
+}
+
+/// Models of sub-instances stay below so many non-zeros.
+const MOST_NONZEROS: usize = 200_000;
+
+impl Source {
+    /// The model on the first `size` elements of each set; `None` where there is none.
+    #[must_use]
+    pub fn model_of_first(&self, size: usize) -> Option<Model> {
+        model_of(&self.text, &self.instance.first(size), &self.bind, &self.states)
+    }
+}
+
+/// The model of a formulation on an instance; `None` where it does not become one.
+#[must_use]
+pub fn model_of(
+    text: &str,
+    instance: &Instance,
+    bind: &BTreeMap<String, String>,
+    states: &BTreeMap<String, FamilyState>,
+) -> Option<Model> {
+    let parse = notation::parse(text);
+    let (checked, found) = notation::check(&parse.tree);
+    if parse.diagnostics.iter().chain(&found).any(notation::Diagnostic::is_error) {
+        return None;
+    }
+    let (names, _) = notation::assumed(text, &checked, instance, bind);
+    let bound = notation::bind(&checked, instance, &names).ok()?;
+    let mut expansion = Expansion::new(bound, states, Limits { nonzeros: MOST_NONZEROS });
+    while expansion.advance(1_000_000) == Progress::Working {}
+    Some(expansion.finish().ok()?.0)
+}

@@ -1,0 +1,262 @@
+//! Studies on small rivals whose answers are known.
+
+use std::collections::BTreeMap;
+use std::future::Future;
+use std::rc::Rc;
+
+use catalogue::{Class, generate};
+use instance::{Instance, Reader, read};
+use record::study::{EquivalenceKind, EquivalenceLevel, OrderLevel, Relation};
+
+use crate::{Desk, Plan, Running, Source, Subject, court, model_of};
+
+/// A study driven to its end in slices of `ticks`.
+fn driven<T, F, W>(ticks: u64, study: F) -> T
+where
+    F: FnOnce(Rc<Desk>) -> W,
+    W: Future<Output = T> + 'static,
+{
+    let mut running = Running::new(study);
+    while !running.advance(ticks) {}
+    running.take().expect("it is at its end")
+}
+
+fn instance(text: &str) -> Rc<Instance> {
+    Rc::new(read(text, None).instance.unwrap_or_else(|| Instance::new(Reader::Blocks)))
+}
+
+fn subject(letter: &str, text: &str, instance: &Rc<Instance>) -> Subject {
+    let states = BTreeMap::new();
+    let model = model_of(text, instance, &BTreeMap::new(), &states).expect("a model");
+    Subject {
+        letter: letter.to_owned(),
+        title: model.title().to_owned(),
+        model: Rc::new(model),
+        entry: None,
+        relaxation: false,
+        source: Some(Source {
+            text: Rc::from(text),
+            instance: Rc::clone(instance),
+            bind: BTreeMap::new(),
+            states,
+        }),
+    }
+}
+
+fn shipped(letter: &str, id: &str, instance: &Rc<Instance>) -> Subject {
+    let entry = catalogue::find(id).expect("it is shipped");
+    Subject { entry: Some(entry.clone()), ..subject(letter, entry.text, instance) }
+}
+
+fn stops(count: u32) -> Rc<Instance> {
+    instance(&generate("atsp", count, Class::Uniform, 1).expect("an instance"))
+}
+
+#[test]
+fn right_rivals_are_the_same_and_each_broken_one_is_noticed() {
+    let data = stops(7);
+    let rivals = ["atsp/labels", "atsp/subtours"];
+    let subjects: Vec<Subject> =
+        rivals.iter().zip(["A", "B"]).map(|(id, letter)| shipped(letter, id, &data)).collect();
+    let plan = Plan { sizes: vec![3, 4, 5], duels: 3, ..Plan::default() };
+    let verdicts = driven(100_000, |desk| court::court(desk, subjects, plan));
+    let verdict = &verdicts[0];
+    assert_eq!(
+        (verdict.equivalent, verdict.level, verdict.kind),
+        (Some(true), EquivalenceLevel::Enumerated, EquivalenceKind::Sets),
+        "{verdict:?}"
+    );
+    // Rounds through n stops: (n − 1)!, so 24 on five.
+    assert!(verdict.evidence.iter().any(|one| one.test == "every plan" && one.count == 24));
+    assert!(verdict.counterexample.is_none());
+    for mutant in &verdict.mutants {
+        // With every closed tour forbidden, one of the two degree families follows from the other.
+        let idle = mutant.rival == "B" && mutant.without != "subtour";
+        assert_eq!(mutant.caught, Some(!idle), "{mutant:?}");
+    }
+}
+
+#[test]
+fn labels_with_too_small_a_coefficient_are_caught_on_few_stops() {
+    let data = stops(6);
+    let text = catalogue::find("atsp/labels").expect("it is shipped").text;
+    // The label rows let a drive go up by one label: n − 1 is needed, n − 2 is one too few.
+    let broken = text.replace("(n−1) x_{i,j} ≤ n − 2", "(n−2) x_{i,j} ≤ n − 3");
+    assert_ne!(broken, text);
+    let subjects = vec![shipped("A", "atsp/subtours", &data), subject("B", &broken, &data)];
+    let plan = Plan { mutants: false, ..Plan::default() };
+    let verdict = driven(1_000_000, |desk| court::court(desk, subjects, plan)).remove(0);
+    assert_eq!(verdict.equivalent, Some(false), "{verdict:?}");
+    let example = verdict.counterexample.expect("a plan that labels refuse");
+    assert_eq!((example.admitted_by.as_str(), example.refused_by.as_str()), ("A", "B"));
+    assert!(example.size.is_some_and(|size| size <= 4), "{:?}", example.size);
+    assert!(example.violated.contains(&"order".to_owned()), "{:?}", example.violated);
+}
+
+/// Cutting one way round a triangle: a plan that costs −1 more either way is none of the other.
+const OPEN: &str = "Cover
+data
+  J  jobs
+  c_j  ∀ j ∈ J  cost
+minimise
+  Σ_{j ∈ J} c_j x_j
+subject to
+  Σ_{j ∈ J} x_j ≥ 1                     (some)
+  x_j ∈ {0, 1}  ∀ j ∈ J
+";
+
+#[test]
+fn covering_and_partitioning_agree_for_non_negative_costs_alone() {
+    let data = instance("J\na b c d\n\nc by j\na 3\nb 2\nc 4\nd 5\n");
+    let exactly = OPEN.replace("x_j ≥ 1", "x_j = 1");
+    let subjects = vec![subject("A", OPEN, &data), subject("B", &exactly, &data)];
+    let verdict = driven(50_000, |desk| court::court(desk, subjects, Plan::default())).remove(0);
+    assert_eq!(
+        (verdict.equivalent, verdict.kind),
+        (Some(true), EquivalenceKind::NonNegativeCosts),
+        "{verdict:?}"
+    );
+    let example = verdict.counterexample.expect("two jobs at once");
+    assert_eq!((example.admitted_by.as_str(), example.size), ("A", Some(2)));
+}
+
+#[test]
+fn what_comes_out_is_the_same_for_every_slice() {
+    let study = |ticks| {
+        let data = stops(5);
+        let subjects =
+            vec![shipped("A", "atsp/labels", &data), shipped("B", "atsp/subtours", &data)];
+        let plan = Plan { sizes: vec![4], duels: 2, ..Plan::default() };
+        let (again, further) = (subjects.clone(), plan.clone());
+        let verdicts = driven(ticks, |desk| court::court(desk, subjects, plan));
+        let ladder = driven(ticks, |desk| crate::ladder::ladder(desk, again, further));
+        (verdicts, ladder)
+    };
+    let whole = study(u64::MAX);
+    for ticks in [1, 777, 50_000] {
+        assert_eq!(study(ticks), whole);
+    }
+}
+
+#[test]
+fn leaving_a_family_out_is_the_bound_of_the_text_without_it() {
+    let data = stops(8);
+    let entry = catalogue::find("atsp/labels").expect("it is shipped");
+    let subjects = vec![shipped("A", "atsp/labels", &data)];
+    let plan = Plan::default();
+    let found = driven(1_000_000, |desk| crate::families::families(desk, subjects, plan));
+    let rival = &found.rivals[0];
+    for share in &rival.families {
+        let label = format!("({})", share.name);
+        let without: Vec<&str> =
+            entry.text.lines().filter(|line| !line.trim_end().ends_with(&label)).collect();
+        assert_eq!(without.len() + 1, entry.text.lines().count(), "{label}");
+        let bare = subject("A", &(without.join("\n") + "\n"), &data);
+        let bound = driven(1_000_000, |desk| async move { desk.relax(&bare.model).await.bound });
+        assert!(close(bound, share.without), "{}: {bound:?} {share:?}", share.name);
+    }
+    // Efficiency (Shapley 1953): the shares add up to what all families gain together.
+    let shares: f64 = rival.families.iter().filter_map(|share| share.shapley).sum();
+    let gained = rival.bound.zip(rival.bare).map(|(bound, bare)| bound - bare);
+    assert!(close(Some(shares), gained), "{shares} {gained:?}");
+}
+
+fn close(a: Option<f64>, b: Option<f64>) -> bool {
+    a.zip(b).is_some_and(|(a, b)| (a - b).abs() <= 1e-7 * (1.0 + a.abs()))
+}
+
+/// Open sites, each client served by open ones; the links one by one, or added up by site.
+const LINKED: &str = "Sites
+data
+  I  sites
+  J  clients
+  f_i  ∀ i ∈ I  cost of opening
+  c_{i,j}  ∀ i ∈ I, j ∈ J  cost of serving
+minimise
+  Σ_{i ∈ I} f_i y_i + Σ_{i ∈ I} Σ_{j ∈ J} c_{i,j} x_{i,j}
+subject to
+  Σ_{i ∈ I} x_{i,j} = 1       ∀ j ∈ J           (serve)
+  x_{i,j} ≤ y_i               ∀ i ∈ I, j ∈ J    (link)
+  x_{i,j} ≥ 0                 ∀ i ∈ I, j ∈ J
+  y_i ∈ {0, 1}                ∀ i ∈ I
+";
+
+#[test]
+fn added_up_links_are_certified_to_be_weaker() {
+    let data = instance(
+        "I\np q\n\nJ\n1 2 3\n\nf by i\np 4\nq 5\n\nc by i, j\n\
+         p 1 1\np 2 3\np 3 6\nq 1 5\nq 2 2\nq 3 1\n",
+    );
+    let added = LINKED.replace(
+        "  x_{i,j} ≤ y_i               ∀ i ∈ I, j ∈ J    (link)",
+        "  Σ_{j ∈ J} x_{i,j} ≤ |J| y_i  ∀ i ∈ I           (link)",
+    );
+    assert_ne!(added, LINKED);
+    let subjects = vec![subject("A", LINKED, &data), subject("B", &added, &data)];
+    let orders = driven(10_000, |desk| crate::order::order(desk, subjects, Plan::default()));
+    let order = &orders[0];
+    assert_eq!((order.relation, order.level), (Relation::NeverWeaker, OrderLevel::Certified));
+    let [forth, back] = &order.certificates;
+    assert_eq!((forth.holds, forth.proved), (Some(true), forth.rows));
+    // A single link can be broken over the added-up relaxation, by at most 1 − 1/|J|.
+    assert_eq!(back.holds, Some(false));
+    assert!((back.violation - 2.0 / 3.0).abs() < 1e-9, "{back:?}");
+}
+
+#[test]
+fn a_switch_is_tightened_to_what_the_data_need_and_loses_no_plan() {
+    let text = "Lots
+data
+  T  periods
+  d_t  ∀ t ∈ T  demand
+minimise
+  Σ_{t ∈ T} 10 y_t + Σ_{t ∈ T} 2 q_t
+subject to
+  q_t ≤ 1000 y_t        ∀ t ∈ T  (switch)
+  q_t ≥ d_t             ∀ t ∈ T  (meet)
+  0 ≤ q_t ≤ 40          ∀ t ∈ T
+  y_t ∈ {0, 1}          ∀ t ∈ T
+";
+    let data = instance("T\na b\n\nd by t\na 30\nb 20\n");
+    let subjects = vec![subject("A", text, &data)];
+    let (again, plan) = (subjects.clone(), Plan::default());
+    let found =
+        driven(9_999, |desk| crate::tightening::tightening(desk, subjects, plan)).rivals.remove(0);
+    let family = &found.families[0];
+    assert_eq!((family.name.as_str(), family.rows, family.tightened_by_data), ("switch", 2, 2));
+    assert!((family.largest - 1000.0).abs() < 1e-9 && (family.largest_by_data - 40.0).abs() < 1e-9);
+    // 2·50 + 10·(30 + 20)/1000, and with 40 in place of 1000.
+    assert!(
+        close(found.bound, Some(100.5)) && close(found.bound_by_data, Some(112.5)),
+        "{found:?}"
+    );
+    let rungs = driven(9_999, |desk| crate::ladder::ladder(desk, again, Plan::default()));
+    let bounds: Vec<f64> = rungs.rivals[0].rungs.iter().filter_map(|rung| rung.bound).collect();
+    let optimum = rungs.reference.expect("a plan");
+    assert!((optimum - 120.0).abs() < 1e-9, "{rungs:?}");
+    for bound in bounds {
+        assert!(bound <= optimum + 1e-7 && bound >= 100.5 - 1e-7, "{bound}");
+    }
+}
+
+#[test]
+fn numerics_name_the_row_that_leaks() {
+    let text = "Switch
+data
+  T  periods
+minimise
+  Σ_{t ∈ T} y_t
+subject to
+  q_t ≤ 10000000 y_t    ∀ t ∈ T  (switch)
+  q_t ≥ 1               ∀ t ∈ T  (meet)
+  q_t ≥ 0               ∀ t ∈ T
+  y_t ∈ {0, 1}          ∀ t ∈ T
+";
+    let data = instance("T\na b\n\nd by t\na 30\nb 20\n");
+    let subjects = vec![subject("A", text, &data)];
+    let found = driven(1, |desk| crate::numerics::numerics(desk, subjects, Plan::default()));
+    let rival = &found.rivals[0];
+    // 10⁷ · 10⁻⁶: ten units at a switch that counts as closed.
+    assert!((rival.leak.0 - 10.0).abs() < 1e-9 && rival.leak.1 == "switch[a]", "{rival:?}");
+    assert!(rival.verdicts.iter().any(|verdict| verdict.contains("switch[a]")), "{rival:?}");
+}

@@ -30,45 +30,62 @@ pub(crate) const FAMILIES: &[Family] = &[
     family!(
         "atsp": "assignment", "labels", "lifted-labels", "one-commodity", "two-commodity",
         "multi-commodity", "subtours", "cuts", "tight-one-commodity", "time-staged", "legs",
-        "precedence-labels", "precedence", "rlt-labels"
+        "precedence-labels", "precedence", "rlt-labels", "loose-labels",
+        "lifted-precedence-labels"
     ),
     family!("tsp": "subtours", "degrees", "two-commodity"),
     family!("path": "flow", "potentials"),
-    family!("ufl": "joined", "split"),
-    family!("lot": "big-m", "l-s", "location-form", "shortest-path-form"),
+    family!("ufl": "joined", "split", "radii"),
+    family!(
+        "lot": "big-m", "l-s", "location-form", "shortest-path-form", "all-demand", "wagner-whitin"
+    ),
     family!("limited-path": "flow", "layers"),
     family!(
         "cvrp": "load-labels", "lifted-load-labels", "load-flow", "tight-load-flow",
-        "fractional-cuts", "capacity-cuts"
+        "fractional-cuts", "capacity-cuts", "three-index", "routes"
     ),
     family!("cfl": "joined", "total", "split"),
     family!("p-median": "joined", "split", "radius"),
     family!("p-centre": "assignment", "radius"),
     family!(
         "tree": "labels", "one-commodity", "cuts", "subtours", "directed-cuts",
-        "multi-commodity"
+        "multi-commodity", "arborescences", "undirected-flow"
     ),
     family!(
         "steiner": "one-commodity", "cuts", "undirected-flow", "directed-cuts",
-        "multi-commodity", "balanced-cuts"
+        "multi-commodity", "balanced-cuts", "nodes"
     ),
-    family!("design": "joined", "split"),
+    family!("design": "joined", "split", "by-origin"),
     family!("matching": "degree", "odd-sets"),
-    family!("stable-set": "stars", "edges", "cliques"),
-    family!("colouring": "assignment", "ordered", "cliques", "representatives"),
+    family!("stable-set": "stars", "edges", "cliques", "odd-cycles"),
+    family!(
+        "colouring": "assignment", "ordered", "cliques", "representatives", "partial-order",
+        "stable-sets"
+    ),
     family!("ordering": "labels", "dicycles"),
     family!("max-cut": "sides", "triangles"),
     family!("grouping": "triangles", "assignment", "representatives"),
-    family!("hub": "paths", "flow"),
-    family!("clsp": "big-m", "location-form"),
-    family!("bins": "assignment", "ordered", "arc-flow", "patterns"),
-    family!("knapsack": "plain", "covers"),
-    family!("gap": "plain", "covers"),
+    family!("hub": "paths", "flow", "bounded-paths"),
+    family!("clsp": "big-m", "location-form", "l-s", "shortest-path-form"),
+    family!(
+        "bins": "assignment", "ordered", "arc-flow", "patterns", "heads", "one-cut", "linked"
+    ),
+    family!("knapsack": "plain", "covers", "states"),
+    family!("gap": "plain", "covers", "patterns"),
     family!("cover": "plain", "triples"),
-    family!("machine": "big-m", "linear-ordering", "time-indexed"),
-    family!("job-shop": "disjunctive", "time-indexed", "time-indexed-split"),
-    family!("rcpsp": "pulse", "pulse-split", "step"),
-    family!("unit": "aggregated", "pairwise", "three-binary", "turn-on-off"),
-    family!("piecewise": "incremental", "multiple-choice", "convex-combination", "logarithmic"),
-    family!("qap": "big-m", "rlt-1"),
+    family!(
+        "machine": "big-m", "linear-ordering", "time-indexed", "parallel", "positions"
+    ),
+    family!(
+        "job-shop": "disjunctive", "time-indexed", "time-indexed-split", "surplus", "ranks"
+    ),
+    family!("rcpsp": "pulse", "pulse-split", "step", "flow"),
+    family!(
+        "unit": "aggregated", "pairwise", "three-binary", "turn-on-off", "three-binary-summed"
+    ),
+    family!(
+        "piecewise": "incremental", "multiple-choice", "convex-combination", "logarithmic",
+        "split-combination", "big-m", "tight-combination"
+    ),
+    family!("qap": "big-m", "rlt-1", "products", "four-sums"),
 ];

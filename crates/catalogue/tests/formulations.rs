@@ -47,7 +47,9 @@ fn stated(id: &str, instance: &Instance) -> Size {
         "path/potentials" => (n, m, 0),
         "ufl/joined" => (i * j + i, j + i, 0),
         "ufl/split" => (i * j + i, j + i * j, 0),
-        "lot/big-m" => (3 * n + 1, 2 * n, 0),
+        "ufl/radii" => sizes::radii(instance),
+        "lot/wagner-whitin" => (3 * n + 1, 2 * n + pairs, 0),
+        "lot/big-m" | "lot/all-demand" => (3 * n + 1, 2 * n, 0),
         "lot/l-s" => (3 * n + 1, 2 * n, n),
         "lot/location-form" => (3 * n + 1 + pairs, 3 * n + pairs, 0),
         "lot/shortest-path-form" => (3 * n + 1 + pairs, 4 * n, 0),
@@ -108,12 +110,16 @@ fn on_instances(mut check: impl FnMut(&Entry, Class, &Instance)) {
 /// What the data may bring about: no row for what small or complete data lack (a drive without a
 /// drive back, a load too large for one vehicle, two in conflict that a third could represent), and
 /// two radii between which a client has no site.
-const BY_THE_DATA: [(&str, &str); 5] = [
+const BY_THE_DATA: [(&str, &str); 9] = [
     ("row.empty-family", "atsp/lifted-labels"),
     ("row.empty-family", "atsp/rlt-labels"),
+    ("row.empty-family", "atsp/lifted-precedence-labels"),
+    ("row.empty-family", "stable-set/odd-cycles"),
+    ("row.empty-family", "colouring/partial-order"),
     ("row.empty-family", "cvrp/lifted-load-labels"),
     ("row.empty-family", "colouring/representatives"),
     ("lint.twin-rows", "p-centre/radius"),
+    ("lint.twin-rows", "stable-set/odd-cycles"),
 ];
 
 #[test]

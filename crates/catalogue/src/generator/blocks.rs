@@ -10,9 +10,10 @@ impl Blocks {
         Self(String::new())
     }
 
-    /// A set of labels.
+    /// A set of labels, a few hundred to a line.
     pub(super) fn list(&mut self, name: &str, labels: &[String]) {
-        self.0.push_str(&format!("{name}\n{}\n\n", labels.join(" ")));
+        let lines: Vec<String> = labels.chunks(500).map(|line| line.join(" ")).collect();
+        self.0.push_str(&format!("{name}\n{}\n\n", lines.join("\n")));
     }
 
     /// A set of numbered labels: `letter` and 1, 2, ….

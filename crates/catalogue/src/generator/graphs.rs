@@ -5,6 +5,7 @@
 use super::Class;
 use super::blocks::{Blocks, names};
 use super::draw::{Draw, Point};
+use super::listed::stable_sets;
 
 /// Nodes, where they lie, and edges by their ends, the first before the second.
 struct Graph {
@@ -109,5 +110,6 @@ pub(super) fn colours(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     }
     let mut out = graph.blocks();
     out.value("h", degrees.iter().max().unwrap_or(&0) + 1);
+    stable_sets(&mut out, &graph.nodes, &graph.edges);
     Some(out)
 }

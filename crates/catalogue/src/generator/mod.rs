@@ -9,6 +9,7 @@ mod draw;
 mod facilities;
 mod graphs;
 mod items;
+mod listed;
 mod lots;
 mod networks;
 mod open_sites;
@@ -53,18 +54,18 @@ impl Class {
 /// | `ufl` | facilities, twice as many clients | all but nearly symmetric |
 /// | `lot` | periods | uniform, clustered, 0 and 1 |
 /// | `limited-path` | nodes, some four arcs from each | all |
-/// | `cvrp` | depot and customers | all |
+/// | `cvrp` | depot and customers; all rounds, of up to 13 places | all |
 /// | `cfl`, `p-median`, `p-centre` | sites, twice as many clients | all but nearly symmetric |
 /// | `tree`, `steiner` | nodes, half of which are to be connected | all but nearly symmetric |
 /// | `design` | nodes, about as many pairs with goods | all |
 /// | `matching`, `max-cut`, `stable-set` | nodes | all but nearly symmetric |
-/// | `colouring` | nodes | uniform, Euclidean, clustered |
+/// | `colouring` | nodes; all stable sets, of up to 12 nodes | uniform, Euclidean, clustered |
 /// | `ordering` | items | uniform, 0 and 1, nearly symmetric |
 /// | `grouping` | items | all but nearly symmetric |
 /// | `hub` | places, two hubs; lengths of shortest ways | all |
 /// | `bins` | sizes, with all patterns | uniform, clustered, 0 and 1 |
 /// | `knapsack` | items | uniform, clustered, 0 and 1 |
-/// | `gap` | jobs for three agents | uniform, clustered, 0 and 1 |
+/// | `gap` | jobs for three agents; all lists, of up to 12 jobs | uniform, clustered, 0 and 1 |
 /// | `cover` | rows, twice as many choices | uniform, clustered, 0 and 1 |
 /// | `machine` | jobs | uniform, clustered, 0 and 1 |
 /// | `job-shop` | jobs: half of it and 1, on three machines | uniform, clustered, 0 and 1 |
@@ -74,7 +75,7 @@ impl Class {
 /// | `piecewise` | pieces of each of four curves | uniform, clustered, 0 and 1 |
 /// | `qap` | plants: half of it and 2 | all |
 ///
-/// `O(size²)`; `hub` `O(size³)`.
+/// `O(size²)`; `hub` `O(size³)`; where all of something is listed, exponential up to its limit.
 #[must_use]
 pub fn generate(family: &str, size: u32, class: Class, seed: u64) -> Option<String> {
     match family {

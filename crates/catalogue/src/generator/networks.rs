@@ -4,32 +4,33 @@
 use super::Class;
 use super::blocks::{Blocks, names};
 use super::draw::Draw;
+use super::listed::rounds;
 
 /// Rounds from the first place: demands above 0, and vehicles that hold about two fifths of all.
 pub(super) fn vehicles(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let points = draw.points(size, class);
     let places = names('n', points.len());
+    let mut ways = vec![vec![0; points.len()]; points.len()];
     let mut costs = Vec::new();
-    for (from, &here) in places.iter().zip(&points) {
-        for (to, &there) in places.iter().zip(&points) {
-            if from != to {
-                costs.push(format!("{from} {to} {}", draw.cost(class, here, there)));
-            }
+    for (i, &here) in points.iter().enumerate() {
+        for (j, &there) in points.iter().enumerate().filter(|&(j, _)| j != i) {
+            ways[i][j] = draw.cost(class, here, there);
+            costs.push(format!("{} {} {}", places[i], places[j], ways[i][j]));
         }
     }
     let most = if class == Class::ZeroOne { 1 } else { 9 };
     let drawn = places.iter().skip(1).map(|_| 1 + draw.below(most));
     let demands: Vec<i64> = std::iter::once(0).chain(drawn).collect();
     let (all, largest) = (demands.iter().sum::<i64>(), demands.iter().max().copied());
-    let demands: Vec<String> =
-        places.iter().zip(&demands).map(|(place, demand)| format!("{place} {demand}")).collect();
+    let room = largest.unwrap_or(0).max((2 * all + 4) / 5);
     let mut out = Blocks::new();
     out.list("V", &places);
     out.by("c", "i, j", &costs);
-    out.by("q", "i", &demands);
-    out.value("Q", largest.unwrap_or(0).max((2 * all + 4) / 5));
+    out.column(("q", "i"), &places, |i| demands[i]);
+    out.value("Q", room);
     out.value("r", &places[0]);
+    rounds(&mut out, &places, &ways, (&demands, room));
     out
 }
 

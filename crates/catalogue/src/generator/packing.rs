@@ -3,6 +3,7 @@
 use super::Class;
 use super::blocks::Blocks;
 use super::draw::Draw;
+use super::listed::lists;
 
 /// Pieces from a fifth to three fifths of a bin, and every pattern that leaves no room for a piece.
 pub(super) fn bins(size: u32, class: Class, seed: u64) -> Option<Blocks> {
@@ -76,10 +77,12 @@ pub(super) fn agents(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     }
     blocks.table(("c", "i, j"), (&agents, &jobs), |_, _| Some(10 + draw.below(41)));
     blocks.table(("a", "i, j"), (&agents, &jobs), |i, j| Some(hours[i][j]));
-    blocks.column(("b", "i"), &agents, |i| {
-        let dealt: i64 = hours[i].iter().skip(i).step_by(3).sum();
-        dealt + draw.below(6)
-    });
+    let mut there = Vec::new();
+    for (i, one) in hours.iter().enumerate() {
+        there.push(one.iter().skip(i).step_by(3).sum::<i64>() + draw.below(6));
+    }
+    blocks.column(("b", "i"), &agents, |i| there[i]);
+    lists(&mut blocks, (&agents, &jobs), &hours, &there);
     Some(blocks)
 }
 

@@ -30,18 +30,26 @@ pub(crate) fn networks(id: &str, instance: &Instance) -> Option<Size> {
     let (family, _) = id.split_once('/')?;
     match family {
         "atsp" | "tsp" => round_trips(id, count(instance, "V")),
-        "cvrp" => vehicles(id, count(instance, "V")),
+        "cvrp" => vehicles(id, instance),
         "limited-path" => limited(id, instance),
         "cfl" | "p-median" | "p-centre" => sites(id, instance),
         "tree" | "steiner" => trees(id, instance),
-        "design" => {
-            let [n, a, k] = ["V", "A", "K"].map(|name| count(instance, name));
-            let links = if id == "design/joined" { a } else { k * a };
-            Some((a + k * a, k * n + links, 0))
-        }
+        "design" => design(id, instance),
         "matching" | "stable-set" | "max-cut" | "colouring" => graphs(id, instance),
         _ => items(id, count(instance, "V")),
     }
+}
+
+fn design(id: &str, instance: &Instance) -> Option<Size> {
+    let [n, a, k] = ["V", "A", "K"].map(|name| count(instance, name));
+    let Some(Datum::Tuples { rows, .. }) = instance.get("K") else { panic!("no pairs") };
+    let origins = rows.iter().map(|pair| &pair[0]).collect::<BTreeSet<_>>().len();
+    Some(match id {
+        "design/joined" => (a + k * a, k * n + a, 0),
+        "design/split" => (a + k * a, k * n + k * a, 0),
+        "design/by-origin" => (a * (origins + 1), origins * (n + a), 0),
+        _ => return None,
+    })
 }
 
 fn round_trips(id: &str, n: usize) -> Option<Size> {
@@ -51,7 +59,8 @@ fn round_trips(id: &str, n: usize) -> Option<Size> {
         "atsp/tight-one-commodity" => (2 * drives, 2 * n + 3 * stops + 2 * inner, 0),
         "atsp/time-staged" => ((n + 1) * drives, 2 * n + drives + stops, 0),
         "atsp/legs" => (drives + (n - 2) * inner + stops * stops, 2 * n + 3 * stops + 3 * inner, 0),
-        "atsp/precedence-labels" => (drives + inner, 2 * n + 2 * inner + triples, 0),
+        "atsp/loose-labels" => (drives + stops, 2 * n + inner, 0),
+        "atsp/precedence-labels" | "atsp/lifted-precedence-labels" => (drives + inner, 2 * n + 2 * inner + triples, 0),
         "atsp/precedence" => (drives + inner, 2 * n + 3 * inner / 2 + triples, 0),
         "atsp/rlt-labels" => (2 * drives + n, 2 * n + 5 * n - 4 + 4 * inner, 0),
         "tsp/degrees" => (drives / 2, n, 0),
@@ -60,12 +69,15 @@ fn round_trips(id: &str, n: usize) -> Option<Size> {
     })
 }
 
-fn vehicles(id: &str, n: usize) -> Option<Size> {
+fn vehicles(id: &str, instance: &Instance) -> Option<Size> {
+    let n = count(instance, "V");
     let (stops, drives, inner) = (n - 1, n * (n - 1), (n - 1) * (n - 2));
     Some(match id {
         "cvrp/load-labels" | "cvrp/lifted-load-labels" => (drives + stops, 2 * stops + inner, 0),
         "cvrp/load-flow" => (2 * drives, 3 * stops + drives, 0),
         "cvrp/tight-load-flow" => (2 * drives, 3 * stops + 2 * drives, 0),
+        "cvrp/three-index" => (drives * n + stops * stops, stops * (3 * n + 1), 1),
+        "cvrp/routes" => (drives + count(instance, "P"), drives + stops, 0),
         "cvrp/fractional-cuts" | "cvrp/capacity-cuts" => (drives, 2 * stops, 1),
         _ => return None,
     })
@@ -116,6 +128,14 @@ fn sites(id: &str, instance: &Instance) -> Option<Size> {
     })
 }
 
+/// The costs of a client that differ, but its largest, for all clients together.
+pub(crate) fn radii(instance: &Instance) -> Size {
+    let Some(Datum::Table { cells, .. }) = instance.get("c") else { panic!("no costs") };
+    let each: BTreeSet<_> = cells.iter().map(|(key, c)| (&key[1], c.to_string())).collect();
+    let radii = each.len() - count(instance, "J");
+    (count(instance, "I") + radii, radii + 1, 0)
+}
+
 /// How many different distances there are, and how many of a client for all clients together.
 fn distances(instance: &Instance) -> (usize, usize) {
     let Some(Datum::Table { cells, .. }) = instance.get("d") else { panic!("no distances") };
@@ -131,6 +151,8 @@ fn trees(id: &str, instance: &Instance) -> Option<Size> {
         "tree/directed-cuts" => (3 * m, m + 1, 1),
         "tree/one-commodity" => (3 * m, 2 * m + n, 0),
         "tree/multi-commodity" => (m + 2 * m * n, 1 + m + (n - 1) * (n + 2 * m), 0),
+        "tree/arborescences" => (m + 2 * m * n, 1 + n * m + n * (n - 1), 0),
+        "tree/undirected-flow" => (m + 2 * m * (n - 1), 1 + (n + m) * (n - 1), 0),
         "tree/labels" => (3 * m + n, 3 * m + n, 0),
         _ => return steiner(id, instance, n, m),
     })
@@ -144,6 +166,7 @@ fn steiner(id: &str, instance: &Instance, n: usize, m: usize) -> Option<Size> {
         "steiner/undirected-flow" => (m + 2 * m * (k - 1), (n + m) * (k - 1), 0),
         "steiner/directed-cuts" => (3 * m, m, 1),
         "steiner/multi-commodity" => (3 * m + 2 * m * (k - 1), m + (n + 2 * m) * (k - 1), 0),
+        "steiner/nodes" => (m + n, 1, n),
         "steiner/balanced-cuts" => (3 * m, m + n - k, 1),
         _ => return None,
     })
@@ -159,6 +182,8 @@ fn graphs(id: &str, instance: &Instance) -> Option<Size> {
         "stable-set/cliques" => (n, m, 1),
         "max-cut/sides" => (m + n, 2 * m, 0),
         "max-cut/triangles" => (n * (n - 1) / 2, 2 * n * (n - 1) * (n - 2) / 3, 0),
+        "stable-set/odd-cycles" => (n, m + short_cycles(instance), 0),
+        "colouring/stable-sets" => (count(instance, "P"), n, 0),
         "colouring/representatives" => representatives(instance),
         _ => {
             let h = whole(instance, "h");
@@ -166,11 +191,41 @@ fn graphs(id: &str, instance: &Instance) -> Option<Size> {
             match id {
                 "colouring/assignment" => (h * (n + 1), rows, 0),
                 "colouring/ordered" => (h * (n + 1), rows + 2 * h - 1, 0),
+                "colouring/partial-order" => {
+                    (n * (h + 1), n * (h - 2) + m * h + (n - 1) * (h - 1), 0)
+                }
                 "colouring/cliques" => (h * (n + 1), rows, h),
                 _ => return None,
             }
         }
     })
+}
+
+/// Triangles and pentagons, with chords or without: orders of three or five nodes that are joined
+/// each to the next, counted once.
+fn short_cycles(instance: &Instance) -> usize {
+    let Some(Datum::Tuples { rows, .. }) = instance.get("E") else { panic!("no edges") };
+    let mut joined: BTreeSet<(&String, &String)> = BTreeSet::new();
+    for edge in rows {
+        joined.extend([(&edge[0], &edge[1]), (&edge[1], &edge[0])]);
+    }
+    let mut walks: Vec<Vec<&String>> = joined.iter().map(|&(i, j)| vec![i, j]).collect();
+    let mut closed = 0;
+    for length in 3..=5 {
+        walks = walks.iter().flat_map(|walk| longer(walk, &joined)).collect();
+        let back = walks.iter().filter(|walk| joined.contains(&(walk[length - 1], walk[0])));
+        closed += if length == 4 { 0 } else { back.count() / (2 * length) };
+    }
+    closed
+}
+
+/// A walk and each node that it can go on to.
+fn longer<'a>(
+    walk: &[&'a String],
+    joined: &BTreeSet<(&'a String, &'a String)>,
+) -> Vec<Vec<&'a String>> {
+    let ahead = joined.iter().filter(|(i, j)| *i == walk[walk.len() - 1] && !walk.contains(j));
+    ahead.map(|&(_, j)| [walk, &[j]].concat()).collect()
 }
 
 /// Nodes are listed in the order of their labels' numbers.
@@ -194,6 +249,7 @@ fn items(id: &str, n: usize) -> Option<Size> {
         "grouping/assignment" => (pairs + n * n, n + 3 * n * pairs, 0),
         "grouping/representatives" => (n * n, n + pairs + 2 * (n + 1) * n * (n - 1) / 3, 0),
         "hub/paths" => (n * n + n.pow(4), n * n + 1 + 2 * n.pow(3), 0),
+        "hub/bounded-paths" => (n * n + n.pow(4), 2 * n * n + 1 + 2 * n.pow(4), 0),
         "hub/flow" => (n * n + n.pow(3), 2 * n * n + 1, 0),
         _ => return None,
     })

@@ -4,7 +4,9 @@
 use std::collections::BTreeMap;
 use std::path::Path;
 use std::rc::Rc;
+use std::sync::LazyLock;
 
+use catalogue::Entry;
 use instance::Instance;
 use model::{Model, nearest_f64};
 use serde_json::Value;
@@ -31,8 +33,9 @@ pub fn instance(text: &str) -> Instance {
 /// When there is no such rival, or it does not fit the instance.
 #[must_use]
 pub fn rival(id: &str, instance: &Instance) -> Rc<Model> {
-    let entry = catalogue::find(id).unwrap_or_else(|| panic!("no rival {id}"));
-    formulation(entry.text, instance)
+    static SHIPPED: LazyLock<Vec<Entry>> = LazyLock::new(catalogue::entries);
+    let entry = SHIPPED.iter().find(|entry| entry.id == id);
+    formulation(entry.unwrap_or_else(|| panic!("no rival {id}")).text, instance)
 }
 
 /// A notation text on an instance.

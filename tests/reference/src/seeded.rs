@@ -13,19 +13,22 @@ pub struct Extent {
     pub bounds: &'static [u32],
     /// Sizes for optima: a whole search for each rival.
     pub optima: &'static [u32],
-    /// Seeds of each size and class.
+    /// Seeds of each size and class for the relations.
     pub seeds: u64,
+    /// Seeds of each size and class for optima: with two sizes and three classes or more, at least
+    /// thirty instances.
+    pub searched: u64,
 }
 
 /// How large and how many the instances of a family are. What `size` counts says
 /// [`catalogue::generate`].
 #[must_use]
 pub fn extent(family: &str) -> Extent {
-    let of = |bounds, optima, seeds| Extent { bounds, optima, seeds };
+    let of = |bounds, optima| Extent { bounds, optima, seeds: 10, searched: 5 };
     match family {
-        "atsp" => of(&[4, 6, 8], &[4, 5, 6], 10),
-        "tsp" | "path" | "ufl" | "lot" => of(&[4, 6, 9], &[4, 7], 5),
-        _ => of(&[4, 5, 6], &[4, 5], 3),
+        "atsp" => of(&[4, 6, 8], &[4, 5]),
+        "tsp" | "path" | "ufl" | "lot" => of(&[4, 6, 9], &[4, 7]),
+        _ => of(&[4, 5, 6], &[4, 5]),
     }
 }
 

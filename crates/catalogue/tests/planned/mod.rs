@@ -123,7 +123,7 @@ fn machine(rival: &str, data: &Data<'_>) -> Option<Size> {
             // A set of two or more has none that begins with the one last release.
             let alone = releases.iter().filter(|one| *one == last).count() == 1;
             Some((n * n, n + 3 * pairs / 2, n - usize::from(alone)))
-        },
+        }
         "positions" => Some((n * n + 2 * n, 5 * n - 1 + n * n, 0)),
         "linear-ordering" => Some((n * n, 2 * n + pairs + pairs / 2 + pairs * (n - 2) / 3, 0)),
         "time-indexed" => {

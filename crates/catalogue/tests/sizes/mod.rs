@@ -60,7 +60,9 @@ fn round_trips(id: &str, n: usize) -> Option<Size> {
         "atsp/time-staged" => ((n + 1) * drives, 2 * n + drives + stops, 0),
         "atsp/legs" => (drives + (n - 2) * inner + stops * stops, 2 * n + 3 * stops + 3 * inner, 0),
         "atsp/loose-labels" => (drives + stops, 2 * n + inner, 0),
-        "atsp/precedence-labels" | "atsp/lifted-precedence-labels" => (drives + inner, 2 * n + 2 * inner + triples, 0),
+        "atsp/precedence-labels" | "atsp/lifted-precedence-labels" => {
+            (drives + inner, 2 * n + 2 * inner + triples, 0)
+        }
         "atsp/precedence" => (drives + inner, 2 * n + 3 * inner / 2 + triples, 0),
         "atsp/rlt-labels" => (2 * drives + n, 2 * n + 5 * n - 4 + 4 * inner, 0),
         "tsp/degrees" => (drives / 2, n, 0),

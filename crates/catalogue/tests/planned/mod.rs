@@ -48,7 +48,7 @@ impl Data<'_> {
     }
 
     /// For each piece the sizes from its own on. Sizes are numbered in the order of the listing.
-    fn from_each_piece_on(&self) -> usize {
+    fn pieces_and_later_sizes(&self) -> usize {
         let Some(Datum::Table { cells, .. }) = self.0.get("b") else { return 0 };
         let number = |key: &[String]| key[0].trim_start_matches('i').parse().unwrap_or(0_usize);
         let sizes = cells.len() + 1;
@@ -88,7 +88,7 @@ fn bins(rival: &str, data: &Data<'_>) -> Option<Size> {
         "patterns" => Some((data.count("P"), i, 0)),
         "linked" => Some((k * (i + 1), i + k + i * k, 0)),
         "one-cut" => Some((1 + i * q - data.total("w"), q, 0)),
-        "heads" => Some((k + data.from_each_piece_on(), i + 2 * k, 0)),
+        "heads" => Some((k + data.pieces_and_later_sizes(), i + 2 * k, 0)),
         _ => None,
     }
 }

@@ -261,6 +261,7 @@ impl Drive {
                 | Reply::Checked(_)
                 | Reply::Explained(_)
                 | Reply::Written(_)
+                | Reply::Studied(_)
                 | Reply::Bound(_) => {}
             }
         }

@@ -2,7 +2,7 @@
 
 use std::collections::VecDeque;
 
-use record::message::{Envelope, Reply, Request, RunNumber};
+use record::message::{Envelope, Progress, Reply, Request, RunNumber, StudyJob};
 use record::wire::{read_request, write_envelope};
 
 use crate::bindings::bindings;
@@ -14,6 +14,7 @@ use crate::lane::Lane;
 use crate::map::{catalogue_entries, guide_sections};
 use crate::outbox::Outbox;
 use crate::readings::Readings;
+use crate::studies::StudyRun;
 use crate::warm::warm;
 
 /// A lane's worker: it holds at most one rival, and reads instances and lists formulations.
@@ -22,6 +23,7 @@ pub struct Worker {
     requests: VecDeque<Request>,
     readings: Readings,
     lane: Option<Lane>,
+    study: Option<StudyRun>,
     run: RunNumber,
     outbox: Outbox,
 }
@@ -54,8 +56,11 @@ impl Worker {
             self.carry_out(request);
         } else if let Some(lane) = &mut self.lane {
             lane.advance(ticks, &mut self.readings, &mut self.outbox);
+        } else if self.study.is_some() {
+            self.go_on_studying(ticks);
         }
-        !self.requests.is_empty() || self.lane.as_ref().is_some_and(Lane::is_busy)
+        let busy = self.study.is_some() || self.lane.as_ref().is_some_and(Lane::is_busy);
+        busy || !self.requests.is_empty()
     }
 
     /// The replies since the last call, in order.
@@ -102,8 +107,9 @@ impl Worker {
             Request::List => self.reply(Reply::Catalogue(catalogue_entries())),
             Request::Load(job) => {
                 self.run = job.run;
-                self.lane = Some(Lane::new(*job));
+                (self.lane, self.study) = (Some(Lane::new(*job)), None);
             }
+            Request::Study(job) => self.begin_study(&job),
             Request::Run { .. }
             | Request::Pause
             | Request::Stop
@@ -114,6 +120,33 @@ impl Worker {
                 None => self.reply(Reply::Failed(fault("message", "no rival is loaded"))),
             },
         }
+    }
+
+    fn begin_study(&mut self, job: &StudyJob) {
+        self.run = job.run;
+        (self.lane, self.study) = (None, None);
+        let scenario = record::file::parse(&job.scenario).scenario;
+        let study = scenario.as_ref().and_then(|scenario| scenario.studies.first());
+        match (&scenario, study) {
+            (Some(scenario), Some(study)) => {
+                let place = job.instance as usize;
+                self.study = Some(StudyRun::new(scenario, place, study));
+            }
+            _ => self.reply(Reply::Failed(fault("scenario", "the scenario holds no study"))),
+        }
+    }
+
+    fn go_on_studying(&mut self, ticks: u64) {
+        let Some(study) = &mut self.study else { return };
+        let reply = if study.advance(ticks) {
+            let found = study.take();
+            self.study = None;
+            Reply::Studied(found)
+        } else {
+            let (doing, _) = study.doing();
+            Reply::Progress(Progress { doing, ticks: study.ticks(), iterations: 0 })
+        };
+        self.reply(reply);
     }
 
     fn reply(&mut self, reply: Reply) {

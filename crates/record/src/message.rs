@@ -7,6 +7,7 @@ use crate::event::{Branching, Event, NodeNumber, NodeState};
 use crate::handover::{Form, Written};
 use crate::results::{ConflictReport, ErrorReport, FamilyReport, Proof, RootReport, SearchReport};
 use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
+use crate::study::Report;
 use crate::typeset::Typeset;
 
 /// The number of a run of a lane: replies of an older run are dropped by the page.
@@ -32,6 +33,8 @@ pub enum Request {
     Write(Form, Box<LaneJob>),
     /// Say which data each rival takes from an instance. Answered by [`Reply::Bound`].
     Bind(Box<BindJob>),
+    /// Make a study of all rivals. Answered by [`Reply::Progress`] and [`Reply::Studied`].
+    Study(Box<StudyJob>),
     /// Load a rival and solve its root. Answered by [`Reply::Understood`] and [`Reply::Root`].
     Load(Box<LaneJob>),
     /// Search on: to the end, or for a number of nodes. Answered by [`Reply::Batch`]es.
@@ -67,6 +70,17 @@ pub struct LaneJob {
     pub settings: Run,
     /// The scenario's seed.
     pub seed: u64,
+}
+
+/// A study to make.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct StudyJob {
+    /// The run that replies carry.
+    pub run: RunNumber,
+    /// The text of a scenario whose first study is made.
+    pub scenario: String,
+    /// The instance, by place.
+    pub instance: u32,
 }
 
 /// Rivals whose data are to be found in an instance.
@@ -166,6 +180,8 @@ pub enum Reply {
     Written(Box<Written>),
     /// Which data the rivals take from the instance, by their names.
     Bound(Vec<Binding>),
+    /// What a study found.
+    Studied(Vec<Report>),
     /// A rival was parsed, checked and expanded.
     Understood(Box<RivalReport>),
     /// Long work on one thing goes on.

@@ -13,4 +13,5 @@ pub(crate) mod session;
 pub(crate) mod share;
 pub(crate) mod size;
 pub(crate) mod store;
+pub(crate) mod studying;
 pub(crate) mod worker;

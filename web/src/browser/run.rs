@@ -191,6 +191,7 @@ impl LaneRun {
             | Reply::Bound(_)
             | Reply::Node(_)
             | Reply::Written(_)
+            | Reply::Studied(_)
             | Reply::Ready { .. }
             | Reply::InstanceRead(_)
             | Reply::Guide(_)

@@ -143,6 +143,8 @@ pub(crate) enum DocumentAction {
     Arrange(Arrange),
     /// What was done by hand is another.
     Steer(Steer),
+    /// A study of this kind is asked for.
+    Study(&'static str),
 }
 
 impl Document {
@@ -362,6 +364,7 @@ impl Document {
             DocumentAction::Edit(edit) => document.edit(edit),
             DocumentAction::Arrange(arrange) => document.arrange(arrange),
             DocumentAction::Steer(steer) => document.steer(steer),
+            DocumentAction::Study(kind) => document.with_study(kind),
         }
         document.release_changed(&self);
         document.into()

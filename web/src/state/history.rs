@@ -90,6 +90,7 @@ fn change(document: &Document, action: &DocumentAction) -> Option<Change> {
         DocumentAction::Edit(edit) => done(edit.words()),
         DocumentAction::Arrange(arrange) => done(arrange.words()),
         DocumentAction::Steer(steer) => done(steer.words()),
+        DocumentAction::Study(_) => done("study that was asked for"),
         DocumentAction::Read(..)
         | DocumentAction::Catalogue(_)
         | DocumentAction::Bound(_)

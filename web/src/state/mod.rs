@@ -20,6 +20,7 @@ pub(crate) mod pointer;
 pub(crate) mod same;
 pub(crate) mod share;
 pub(crate) mod steer;
+pub(crate) mod studies;
 pub(crate) mod tree;
 pub(crate) mod typeset;
 pub(crate) mod words;

@@ -12,6 +12,7 @@ use crate::view::inspector::InspectorProps as EvidenceProps;
 use crate::view::lane::is_over;
 use crate::view::results::Results;
 use crate::view::rivals::HUES;
+use crate::view::studies::Studies;
 
 /// The section.
 #[component]
@@ -42,7 +43,8 @@ pub(crate) fn Evidence(props: &EvidenceProps) -> Html {
                    checked to within an amount where what is proved is a bound that far from the figure. \
                    Node counts with + are of a search that is not finished." }
             </p>
-            <p class="prose">
+            <Studies document={document.clone()} />
+            <p class="prose caution">
                 { "A plan that comes out of a model is a decision aid: the driving, working-time, energy and safety rules \
                    of the place, and the people licensed to apply them, come first." }
             </p>

@@ -38,6 +38,7 @@ pub(crate) mod second;
 pub(crate) mod share;
 pub(crate) mod statistics;
 pub(crate) mod steering;
+mod studies;
 pub(crate) mod twin;
 pub(crate) mod typeset;
 pub(crate) mod values;

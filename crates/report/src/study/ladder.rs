@@ -16,7 +16,7 @@ pub(super) fn sections(ladder: &Ladder) -> Vec<Section> {
 
 fn of_rival(rival: &RivalLadder) -> Section {
     let mut table =
-        Table::new(&["step", "bound", "", "gap closed", "iterations", "work", ""], &[0, 2, 6]);
+        Table::new(&["step", "bound", "", "gap closed", "iterations", "work", ""], &[0, 6]);
     table.rows = rival
         .rungs
         .iter()

@@ -1,0 +1,168 @@
+//! The studies that the page offers, and what they found.
+
+use std::collections::BTreeMap;
+use std::rc::Rc;
+
+use record::file;
+use record::scenario::{Scenario, Study};
+use record::study::Report;
+use yew::Reducible;
+
+use crate::state::document::Document;
+
+/// The kinds, each with its question and what is done to answer it.
+pub(crate) const KINDS: [(&str, &str, &str); 6] = [
+    (
+        "equivalence",
+        "Are the rivals the same problem?",
+        "The best plan of each in the other, duels on random objectives, every plan of \
+         sub-instances, and rivals broken on purpose as a control.",
+    ),
+    (
+        "order",
+        "Which relaxation is stronger?",
+        "Theorems where there are some; else every row of one rival over the other's relaxation, \
+         in exact arithmetic.",
+    ),
+    (
+        "ladder",
+        "What lifts the bound?",
+        "Propagation, smaller coefficients, each class of general cuts and the search, towards \
+         one reference value.",
+    ),
+    (
+        "families",
+        "Where does the bound come from?",
+        "Each constraint family left out, alone, and its share, by solving anew.",
+    ),
+    (
+        "tightening",
+        "Which coefficients could be smaller?",
+        "The least that can be proved for each row that a binary switches, and what it buys.",
+    ),
+    ("numerics", "Do the coefficients range too far?", "Ranges, ratios, and what can leak."),
+];
+
+/// What a study gave.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) struct Found {
+    /// The scenario that it was made of.
+    pub(crate) of: Rc<str>,
+    /// Its reports, or why there are none.
+    pub(crate) reports: Result<Vec<Report>, String>,
+}
+
+/// All that was found, and what is being done.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub(crate) struct Shelf {
+    /// By kind.
+    pub(crate) found: BTreeMap<&'static str, Rc<Found>>,
+    /// The kind that is being made, and what it does now.
+    pub(crate) running: Option<(&'static str, String)>,
+}
+
+/// What happens to the shelf.
+#[derive(Debug)]
+pub(crate) enum ShelfAction {
+    /// A study begins.
+    Begun(&'static str),
+    /// It says what it does.
+    Doing(String),
+    /// It is at its end.
+    Ended(Found),
+    /// It is given up.
+    Stopped,
+}
+
+impl Reducible for Shelf {
+    type Action = ShelfAction;
+
+    fn reduce(self: Rc<Self>, action: ShelfAction) -> Rc<Self> {
+        let mut shelf = (*self).clone();
+        match action {
+            ShelfAction::Begun(kind) => shelf.running = Some((kind, "beginning".to_owned())),
+            ShelfAction::Doing(doing) => {
+                if let Some((_, now)) = &mut shelf.running {
+                    *now = doing;
+                }
+            }
+            ShelfAction::Ended(found) => {
+                if let Some((kind, _)) = shelf.running.take() {
+                    shelf.found.insert(kind, Rc::new(found));
+                }
+            }
+            ShelfAction::Stopped => shelf.running = None,
+        }
+        shelf.into()
+    }
+}
+
+/// The text of the scenario that a study of this kind is made of: the document's, with that study
+/// alone, as the document has it or plain.
+pub(crate) fn scenario_of(document: &Document, kind: &str) -> String {
+    let scenario = document.scenario();
+    let own = scenario.studies.iter().find(|study| study.kind == kind).cloned();
+    let plain = || Study { kind: kind.to_owned(), fields: BTreeMap::new() };
+    let studies = vec![own.unwrap_or_else(plain)];
+    let rivals = scenario
+        .rivals
+        .into_iter()
+        .map(|rival| record::scenario::Rival { acts: Vec::new(), ..rival });
+    let rivals = rivals.collect();
+    file::print(&Scenario {
+        studies,
+        rivals,
+        title: String::new(),
+        notes: String::new(),
+        ..scenario
+    })
+}
+
+impl Document {
+    /// A study belongs to the scenario from now on.
+    pub(crate) fn with_study(&mut self, kind: &str) {
+        if self.rest.studies.iter().any(|study| study.kind == kind) {
+            return;
+        }
+        let mut rest = (*self.rest).clone();
+        rest.studies.push(Study { kind: kind.to_owned(), fields: BTreeMap::new() });
+        self.rest = crate::state::pointer::Shared::new(rest);
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::demo::demo;
+
+    #[test]
+    fn a_study_is_made_of_what_counts_alone() {
+        let mut document = Document::open(demo());
+        let before = scenario_of(&document, "ladder");
+        document.title = "another".to_owned();
+        assert_eq!(scenario_of(&document, "ladder"), before);
+        document.seed += 1;
+        assert_ne!(scenario_of(&document, "ladder"), before);
+        document.with_study("ladder");
+        document.with_study("ladder");
+        assert_eq!(document.scenario().studies.len(), demo().studies.len() + 1);
+    }
+
+    #[test]
+    fn what_ends_is_kept_under_its_kind() {
+        let mut shelf = Rc::new(Shelf::default());
+        let found = || Found { of: "".into(), reports: Ok(Vec::new()) };
+        for action in [
+            ShelfAction::Begun("order"),
+            ShelfAction::Doing("row 1".to_owned()),
+            ShelfAction::Ended(found()),
+            ShelfAction::Ended(found()),
+            ShelfAction::Begun("ladder"),
+            ShelfAction::Stopped,
+        ] {
+            shelf = shelf.reduce(action);
+        }
+        assert_eq!(shelf.found.keys().copied().collect::<Vec<_>>(), ["order"]);
+        assert_eq!(shelf.running, None);
+    }
+}

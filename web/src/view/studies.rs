@@ -1,0 +1,157 @@
+//! The studies of the evidence: a question each, a button, and what was found.
+
+use record::study::Report;
+use report::study::{Section, Table, sections};
+use yew::prelude::*;
+
+use crate::browser::studying::Studying;
+use crate::state::document::{Document, DocumentAction};
+use crate::state::studies::{Found, KINDS, Shelf, scenario_of};
+use crate::view::hands::use_hands;
+
+#[derive(Properties, PartialEq)]
+pub(crate) struct StudiesProps {
+    pub(crate) document: Document,
+}
+
+/// All studies.
+#[component]
+pub(crate) fn Studies(props: &StudiesProps) -> Html {
+    let hands = use_hands();
+    let shelf = use_reducer(Shelf::default);
+    let studying = use_memo((), |()| Studying::new(shelf.dispatcher()));
+    let document = &props.document;
+    if document.slots.is_empty() {
+        return Html::default();
+    }
+    html! {
+        for (kind, question, how) in KINDS {
+            <div class="study" key={kind} data-study={kind}>
+                { head(document, &shelf, kind, question, {
+                    let (document, studying, hands) = (document.clone(), (*studying).clone(), hands.clone());
+                    let (running, ready) = (is_running(&shelf, kind), is_ready(&document));
+                    Callback::from(move |_: MouseEvent| {
+                        if running {
+                            return studying.stop();
+                        }
+                        if !ready {
+                            return;
+                        }
+                        if let Some(hands) = &hands {
+                            hands.document.dispatch(DocumentAction::Study(kind));
+                        }
+                        studying.begin(kind, scenario_of(&document, kind), document.chosen);
+                    })
+                }) }
+                { body(document, &shelf, kind, how) }
+            </div>
+        }
+    }
+}
+
+/// Whether there is something to run rivals on; rivals in MPS need no instance.
+fn is_ready(document: &Document) -> bool {
+    document.accepted.is_some() || document.draft.text.is_empty()
+}
+
+fn is_running(shelf: &Shelf, kind: &str) -> bool {
+    shelf.running.as_ref().is_some_and(|(running, _)| *running == kind)
+}
+
+fn head(
+    document: &Document,
+    shelf: &Shelf,
+    kind: &'static str,
+    question: &str,
+    onclick: Callback<MouseEvent>,
+) -> Html {
+    let words = if is_running(shelf, kind) {
+        "Stop"
+    } else if shelf.found.contains_key(kind) {
+        "Ask again"
+    } else {
+        "Ask"
+    };
+    let ready = is_ready(document);
+    html! {
+        <div class="heading">
+            <h3>{ question }</h3>
+            <button type="button" data-testid={format!("study-{kind}")} aria-disabled={(!ready).to_string()}
+                aria-label={format!("{words}: {question}")} {onclick}>{ words }</button>
+        </div>
+    }
+}
+
+fn body(document: &Document, shelf: &Shelf, kind: &'static str, how: &str) -> Html {
+    if let Some((_, doing)) = shelf.running.as_ref().filter(|(running, _)| *running == kind) {
+        return html! { <p class="soft" data-testid="study-doing">{ doing.clone() }</p> };
+    }
+    let Some(found) = shelf.found.get(kind) else {
+        return html! { <p class="soft">{ how.to_owned() }</p> };
+    };
+    let stale = *found.of != *scenario_of(document, kind);
+    html! {
+        <>
+            if stale {
+                <p class="warn">{ "Rivals, instance or settings have changed since: ask again." }</p>
+            }
+            { results(found) }
+        </>
+    }
+}
+
+fn results(found: &Found) -> Html {
+    match &found.reports {
+        Err(why) => html! { <p class="warn">{ format!("It could not be made: {why}.") }</p> },
+        Ok(reports) => reports.iter().flat_map(sections_of).collect(),
+    }
+}
+
+fn sections_of(report: &Report) -> Vec<Html> {
+    sections(report).iter().map(section).collect()
+}
+
+fn section(section: &Section) -> Html {
+    html! {
+        <div class="finding">
+            <h4>{ section.heading.clone() }</h4>
+            for sentence in &section.verdict {
+                <p class="prose">{ sentence.clone() }</p>
+            }
+            if let Some(found) = &section.table {
+                <div class="scroll" tabindex="0" role="region" aria-label={section.heading.clone()}>
+                    { table(found) }
+                </div>
+            }
+            for sentence in &section.notes {
+                <p class="prose soft">{ sentence.clone() }</p>
+            }
+        </div>
+    }
+}
+
+fn table(table: &Table) -> Html {
+    let class = |column: usize| table.words.contains(&column).then_some("word");
+    html! {
+        <table>
+            <thead><tr>
+                for (column, head) in table.head.iter().enumerate() {
+                    <th scope="col" class={class(column)}>{ head.clone() }</th>
+                }
+            </tr></thead>
+            <tbody>
+                for row in &table.rows {
+                    <tr>
+                        for (column, cell) in row.iter().enumerate() {
+                            if column == 0 {
+                                <th scope="row">{ cell.clone() }</th>
+                            } else {
+                                <td class={class(column)}>{ cell.clone() }</td>
+                            }
+                        }
+                    </tr>
+                }
+            </tbody>
+        </table>
+    }
+}

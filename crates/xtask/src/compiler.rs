@@ -82,10 +82,11 @@ impl Compiler {
             command.env_remove(inherited);
         }
         command.env("CARGO_TARGET_DIR", place.wasm_target());
-        command.env("CARGO_ENCODED_RUSTFLAGS", remapped(place).join("\u{1f}"));
+        let flags = [remapped(place), vec!["-Zlocation-detail=none".to_owned()]].concat();
+        command.env("CARGO_ENCODED_RUSTFLAGS", flags.join("\u{1f}")).env("RUSTC_BOOTSTRAP", "1");
         if let Compiler::Debian { rustc, rustdoc, linker, .. } = self {
             command.args(["-Z", "build-std=std,panic_abort"]);
-            command.env("RUSTC", rustc).env("RUSTDOC", rustdoc).env("RUSTC_BOOTSTRAP", "1");
+            command.env("RUSTC", rustc).env("RUSTDOC", rustdoc);
             command.env("CARGO_TARGET_WASM32_UNKNOWN_UNKNOWN_LINKER", linker);
         }
         command

@@ -1,6 +1,7 @@
 //! Children: one bound of a solved relaxation changed, solved again from the basis that is kept.
 //!
-//! Both keep their factors and basis. After each child the bound goes back and the parent is solved
+//! Both begin with the same basis of the parent, since another optimum may need no work for a child,
+//! and keep their factors and basis. After each child the bound goes back and the parent is solved
 //! again off the clock.
 
 use crate::arguments::Arguments;
@@ -12,7 +13,7 @@ use crate::random::Random;
 use crate::sampling::interleaved;
 use crate::solvers::problem;
 use crate::statistics::median;
-use lp::{Col, Limits, Outcome, Simplex};
+use lp::{Basis, Col, Limits, Outcome, Simplex};
 
 /// A bound change: column, lower, upper.
 type Change = (usize, f64, f64);
@@ -54,7 +55,7 @@ fn one(named: &Named, arguments: &Arguments, random: &mut Random) -> Measured {
     let mut ours = Simplex::new(problem(&named.lp));
     let changes = changes(named, &mut ours);
     let mut again = ours.clone();
-    let mut highs = Highs::new(named);
+    let mut highs = Highs::new(named, &ours.basis());
     let rounds = [
         rounds(ours_through(&mut ours, named, &changes).0, changes.len()),
         rounds(ours_through(&mut again, named, &changes).0, changes.len()),
@@ -141,9 +142,9 @@ struct Highs {
 }
 
 impl Highs {
-    fn new(named: &Named) -> Self {
+    fn new(named: &Named, basis: &Basis) -> Self {
         let (model, columns) = highs_peer::model(&named.lp);
-        Self { model: Some(model.solve().into()), columns }
+        Self { model: Some(highs_peer::solved_from(model, basis)), columns }
     }
 
     /// As [`ours_through`].

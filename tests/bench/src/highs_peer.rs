@@ -2,6 +2,8 @@
 
 use crate::shadow::Shadow;
 use highs::{Col, Model, RowProblem, Sense};
+use lp::Basis;
+use std::fmt::Write as _;
 
 /// A model with its columns.
 pub(crate) fn model(lp: &Shadow) -> (Model, Vec<Col>) {
@@ -22,4 +24,34 @@ pub(crate) fn model(lp: &Shadow) -> (Model, Vec<Col>) {
     model.set_option("solver", "simplex");
     model.set_option("simplex_strategy", 1);
     (model, columns)
+}
+
+/// A solved model with this basis of ours: written as a file of HiGHS's own format, which it reads
+/// before it solves.
+pub(crate) fn solved_from(mut model: Model, basis: &Basis) -> Model {
+    let path = std::env::temp_dir().join(format!("hullward-bench-{}.basis", std::process::id()));
+    std::fs::write(&path, basis_file(basis)).unwrap();
+    model.set_option("read_basis_file", path.to_str().unwrap());
+    let solved = model.solve();
+    std::fs::remove_file(&path).unwrap();
+    assert_eq!(solved.simplex_iteration_count(), 0, "the basis was to be optimal");
+    let mut model: Model = solved.into();
+    model.set_option("read_basis_file", "");
+    model
+}
+
+/// Version 2 of the format: a name and a number a variable, 0 at the lower bound, 1 basic, 2 at the
+/// upper bound.
+fn basis_file(basis: &Basis) -> String {
+    let number = |basic: bool, upper: bool| if basic { 1 } else { 2 * i32::from(upper) };
+    let mut text = format!("HiGHS_basis_file v2\nValid\n# Columns {}\n", basis.column_count());
+    for j in 0..basis.column_count() {
+        let number = number(basis.is_basic_column(j), basis.is_upper_column(j));
+        writeln!(text, "c{j} {number}").unwrap();
+    }
+    writeln!(text, "# Rows {}", basis.row_count()).unwrap();
+    for i in 0..basis.row_count() {
+        writeln!(text, "r{i} {}", number(basis.is_basic_row(i), basis.is_upper_row(i))).unwrap();
+    }
+    text
 }

@@ -3,8 +3,10 @@
 //!
 //! It waits for a stall, but for less long where one is to be expected. With many reduced costs of
 //! zero (flows and assignments without cost of their own), ties would be walked through by chance:
-//! from a start with many violated rows at two to three times the pivots on packing. After one bound
-//! has changed few rows are violated and most solves are over before a perturbation would pay.
+//! from a start with many violated rows at two to three times the pivots on packing. From a basis that
+//! an earlier solve has left, such ties are few and a perturbation makes the way longer: two to four
+//! times the pivots on multi-commodity flows after one bound has changed. There it waits until the
+//! steps without progress are a share of the rows.
 //!
 //! Source: Koberstein 2005, section 6.3.
 
@@ -22,8 +24,15 @@ const MANY_VIOLATED: usize = 10;
 /// Steps without progress that are enough where a stall is to be expected.
 const SHORT_STALL: u32 = 3;
 
+/// Steps without progress a row, on top of the usual ones, that are waited for from a basis that an
+/// earlier solve has left.
+const WARM_STALL: f64 = 0.25;
+
 /// How many steps without progress are waited for from the start that the state is in.
 pub(super) fn patience(core: &Core) -> u32 {
+    if core.head.iter().any(|&j| (j as usize) < core.columns()) {
+        return STALL + (WARM_STALL * core.rows() as f64) as u32;
+    }
     let (mut zero, mut all) = (0u32, 0u32);
     for j in (0..core.variables()).filter(|&j| core.status[j] != Status::Basic) {
         if !core.is_fixed(j) {

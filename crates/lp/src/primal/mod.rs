@@ -3,7 +3,8 @@
 //! It cleans up after the dual method's shifts and perturbations, solves again after costs changed,
 //! and finds the rays of unbounded problems. Pricing by Devex reference weights; Harris ratio test;
 //! when it stalls, working bounds of basic variables are relaxed a little (the dual method mends
-//! that afterwards); as a last resort the smallest index enters (Bland 1977).
+//! that afterwards); as a last resort the smallest index enters (Bland 1977). Steepest-edge weights of
+//! the dual method, where it has left any, are kept up: the next solve begins with them.
 //!
 //! Source: Harris 1973; Forrest, Goldfarb 1992; Maros 2003.
 
@@ -43,12 +44,14 @@ pub(crate) struct PrimalState {
     pub(crate) perturbed: bool,
     /// False when relaxing is not allowed.
     pub(crate) may_perturb: bool,
+    /// True when the dual method's weights are more than ones and worth a solve a pivot.
+    pub(crate) keeps_weights: bool,
 }
 
-/// Resets weights and memory.
+/// Resets reference weights and memory.
 pub(crate) fn begin(core: &mut Core, state: &mut PrimalState) {
     core.devex.fill(1.0);
-    core.weight.fill(1.0);
+    state.keeps_weights = core.weight.iter().any(|&weight| weight != 1.0);
     state.aside.clear();
     state.stall = 0;
     state.perturbed = false;
@@ -105,6 +108,10 @@ fn pivot(
     let falls = step.is_sign_positive() == (core.scratch.column.get(position) > 0.0);
     let leaving = core.head[position as usize] as usize;
     pricing::update(core, leaving, entering);
+    if state.keeps_weights {
+        core.weight[position as usize] = core.scratch.rho.norm_squared();
+        core.update_weights(position);
+    }
     let value = core.nonbasic_value(entering as usize) + step;
     core.move_basic(step);
     core.exchange(position, entering, value, if falls { Status::Lower } else { Status::Upper });

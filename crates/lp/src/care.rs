@@ -2,7 +2,10 @@
 //!
 //! The first attempt is the fast one. When its outcome does not pass the check, solves are refined
 //! and smaller entries count; then the solve begins again from the slack basis and keeps away from
-//! small pivots, with tighter and with the usual tolerances; last with looser ones.
+//! small pivots, with tighter and with the usual tolerances, then with looser ones. All of these may
+//! come to the same bad basis, for they go the same way. The last attempts go others: from a slack
+//! basis with columns at either bound and with costs that chance has changed, at first; some with
+//! rows of some width.
 
 /// The settings of an attempt.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -24,6 +27,11 @@ pub(crate) struct Care {
     /// Whether a row may be violated, or a ray leave it, by what the tolerance of a column times its
     /// coefficient makes, not only by what the terms of the row make.
     pub(crate) forgives: bool,
+    /// Whether the sides of the rows are moved apart by half of what a row may be violated by, which
+    /// makes rows that hold up to rounding only, or repeat each other so, a region with an inside.
+    pub(crate) widens: bool,
+    /// Which other way is gone from the slack basis; 0 for none.
+    pub(crate) detour: u32,
 }
 
 /// The first attempt.
@@ -35,25 +43,50 @@ const FAST: Care = Care {
     room: 1.0,
     refines: false,
     forgives: false,
+    widens: false,
+    detour: 0,
 };
 
 /// The attempts from the slack basis.
 const WARY: Care = Care { threshold: 0.5, singular: 1e-9, pivot: 1e-7, refines: true, ..FAST };
 
+/// What stands within the tolerances of its columns is released.
+const LENIENT: Care = Care { threshold: 0.9, entry: 1e-8, forgives: true, ..WARY };
+
+/// The same with rows of some width.
+const WIDE: Care = Care { widens: true, ..LENIENT };
+
+/// Small entries may be pivots: what they keep from being without bounds is small beside the rest of
+/// a column alone.
+const DARING: Care = Care { threshold: 0.3, entry: 1e-12, refines: true, forgives: true, ..FAST };
+
 /// The attempts in turn. Two have tight tolerances, for points that are feasible within the usual
 /// ones and are not once they are put within their bounds: large coefficients multiply the
 /// difference.
-pub(crate) const ATTEMPTS: [Care; 6] = [
+pub(crate) const ATTEMPTS: [Care; 14] = [
     FAST,
     Care { threshold: 0.3, entry: 1e-12, refines: true, ..FAST },
     Care { threshold: 0.3, entry: 1e-12, room: 1e-3, refines: true, ..FAST },
     Care { room: 1e-3, ..WARY },
-    Care { threshold: 0.9, entry: 1e-8, forgives: true, ..WARY },
-    Care { threshold: 0.9, entry: 1e-8, room: 100.0, forgives: true, ..WARY },
+    LENIENT,
+    Care { room: 100.0, ..LENIENT },
+    Care { detour: 1, ..WIDE },
+    Care { detour: 2, ..LENIENT },
+    Care { detour: 3, room: 1e-3, ..WIDE },
+    Care { detour: 4, ..DARING },
+    Care { detour: 5, widens: true, ..DARING },
+    Care { detour: 6, room: 1e-3, ..DARING },
+    Care { detour: 7, room: 100.0, ..DARING },
+    Care { detour: 8, room: 100.0, ..WIDE },
 ];
 
-/// The attempt that begins from the slack basis.
-pub(crate) const FROM_SLACK: usize = 3;
+/// The attempt that begins from the slack basis and goes no detour.
+const FROM_SLACK: usize = 3;
+
+/// Whether an attempt begins from the slack basis.
+pub(crate) fn begins_from_slack(attempt: usize) -> bool {
+    attempt == FROM_SLACK || ATTEMPTS[attempt].detour > 0
+}
 
 impl Care {
     /// The smallest entry of a ratio test when this is the largest.

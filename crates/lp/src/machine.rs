@@ -7,7 +7,7 @@
 //! numbers cannot be trusted: fresh factors, then the row or column is set aside, then the solve
 //! begins again with more care, at last it stops and says why.
 
-use crate::care::{ATTEMPTS, FROM_SLACK};
+use crate::care::{ATTEMPTS, begins_from_slack};
 use crate::dual::{self, DualState, DualStep};
 use crate::outcome::{Outcome, Ray, StopReason};
 use crate::primal::{self, PrimalState, PrimalStep};
@@ -96,8 +96,10 @@ impl Machine {
     fn set_room(core: &mut Core) {
         let largest = largest(core.cost.iter().copied());
         let factor = core.care.room;
-        core.room =
-            Room { primal: factor * PRIMAL, dual: factor * DUAL + PRIMAL_RELATIVE * largest };
+        // What costs of another size let be in the column with the longest range is a gap in the
+        // objective: where tolerances are tight, this one is as well.
+        let rounding = if factor < 1.0 { factor } else { 1.0 } * PRIMAL_RELATIVE * largest;
+        core.room = Room { primal: factor * PRIMAL, dual: factor * DUAL + rounding };
     }
 
     /// Sets the care for an attempt.
@@ -117,9 +119,10 @@ impl Machine {
             self.stop(core, StopReason::Numerical(reason));
             return;
         }
-        if self.attempt == FROM_SLACK {
+        if begins_from_slack(self.attempt) {
+            core.care = ATTEMPTS[self.attempt];
             core.restore_given();
-            core.reset_to_slack_basis();
+            core.reset_to_slack_basis(ATTEMPTS[self.attempt].detour);
         }
         self.begin_attempt(core);
     }
@@ -169,6 +172,7 @@ impl Machine {
         } else {
             self.dual.may_perturb = may_perturb;
             self.dual.perturbed = false;
+            self.dual.detour = if self.round == 1 { core.care.detour } else { 0 };
             dual::begin(core, &mut self.dual);
             self.phase = Phase::Dual;
         }
@@ -328,6 +332,7 @@ impl Machine {
         core.refactor();
         core.compute_basic();
         core.compute_reduced();
+        primal::list_all(core);
         self.primal.aside.clear();
         if !core.is_primal_feasible() {
             self.phase = Phase::Evaluate;

@@ -11,6 +11,11 @@ pub(crate) fn half_to_one(index: usize) -> f64 {
     0.5 + 0.5 * ((z >> 11) as f64 / (1u64 << 53) as f64)
 }
 
+/// The index whose number stands for this one's on a detour: other numbers on each.
+pub(crate) fn detoured(index: usize, detour: u32) -> usize {
+    index.wrapping_add((detour as usize) << 24)
+}
+
 #[cfg(test)]
 mod tests {
     use super::half_to_one;

@@ -10,8 +10,9 @@ use crate::care::{ATTEMPTS, Care};
 use crate::dual::Breakpoint;
 use crate::lu::{BasisColumns, Factor};
 use crate::problem::Problem;
-use crate::sparse::{Matrix, Partition, SparseVector};
-use crate::tolerances::{self, PRIMAL_RELATIVE};
+use crate::random::{detoured, half_to_one};
+use crate::sparse::{Matrix, Partition, SparseVector, largest};
+use crate::tolerances::{self, PRIMAL_RELATIVE, VERIFY_ROW};
 
 /// Vectors kept between iterations so that nothing is allocated in them.
 #[derive(Clone, Debug, Default)]
@@ -77,6 +78,10 @@ pub(crate) struct Core {
     pub(crate) violated: Vec<u32>,
     /// Whether a position is among them.
     pub(crate) is_listed: Vec<bool>,
+    /// Variables whose reduced costs may have the wrong sign, each once (primal).
+    pub(crate) attractive: Vec<u32>,
+    /// Whether a variable is among them.
+    pub(crate) is_attractive: Vec<bool>,
     /// Reference weight by variable (primal).
     pub(crate) devex: Vec<f64>,
     pub(crate) factor: Factor,
@@ -119,6 +124,8 @@ impl Core {
             violation: Vec::new(),
             violated: Vec::new(),
             is_listed: Vec::new(),
+            attractive: Vec::new(),
+            is_attractive: Vec::new(),
             devex: Vec::new(),
             factor: Factor::default(),
             canonical: false,
@@ -152,11 +159,16 @@ impl Core {
         self.status.len()
     }
 
-    /// Makes the slack basis current.
-    pub(crate) fn reset_to_slack_basis(&mut self) {
+    /// Makes the slack basis current; on a detour some columns are at their upper bound.
+    pub(crate) fn reset_to_slack_basis(&mut self, detour: u32) {
         let n = self.columns();
+        let is_upper = |j: usize| detour > 0 && half_to_one(detoured(j, detour)) < 0.75;
         for (j, status) in self.status.iter_mut().enumerate() {
-            *status = if j < n { Status::Lower } else { Status::Basic };
+            *status = match (j < n, is_upper(j)) {
+                (false, _) => Status::Basic,
+                (true, true) => Status::Upper,
+                (true, false) => Status::Lower,
+            };
         }
         self.settle_statuses();
         self.head.clear();
@@ -169,6 +181,23 @@ impl Core {
         self.work_lower.clone_from(&self.lower);
         self.work_upper.clone_from(&self.upper);
         self.partition.is_current = false;
+        if self.care.widens {
+            self.widen_rows();
+        }
+    }
+
+    /// Moves the working sides of each row apart, as far as the check of a point that forgives lets
+    /// a row be violated by half.
+    fn widen_rows(&mut self) {
+        let n = self.columns();
+        for i in 0..self.rows() {
+            let unit = self.unit[n + i];
+            let one = if unit > 1.0 { 1.0 / unit } else { 1.0 };
+            let size = largest(self.matrix.row(i).map(|(_, value)| value));
+            let width = 0.5 * VERIFY_ROW * (one + size);
+            self.work_lower[n + i] -= width;
+            self.work_upper[n + i] += width;
+        }
     }
 
     /// Moves every nonbasic status to a bound that exists (working bounds); fixed variables count

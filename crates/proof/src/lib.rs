@@ -49,4 +49,4 @@ pub use bound::{bound, infeasible};
 pub use certify::{Budget, Certifier, ExactMultipliers, Progress, Wish};
 pub use point::{Place, Point, Violation, violations};
 pub use refine::Residual;
-pub use rows::{Bounds, ExactRows};
+pub use rows::{Bounds, ExactRows, bounds_of};

@@ -10,6 +10,13 @@ use crate::implied;
 /// Lower and upper bound of a column; `None` is infinite.
 pub type Bounds = (Option<Number>, Option<Number>);
 
+/// The bounds of the columns of a model. `O(columns)`.
+#[must_use]
+pub fn bounds_of(model: &Model) -> Vec<Bounds> {
+    let exact = |id: model::NumberId| model.numbers().exact(id).clone();
+    model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact))).collect()
+}
+
 /// Objective and rows of a relaxation in whole numbers: the written rows of the model that are
 /// in, in their order, and then the rows added with [`ExactRows::add`], in that order.
 ///
@@ -75,8 +82,7 @@ impl ExactRows {
         let costs: Vec<Number> = model.columns().iter().map(|c| exact(c.cost)).collect();
         let cost_scale = common_denominator(costs.iter());
         let sign = if model.sense() == Sense::Maximise { -IBig::ONE } else { IBig::ONE };
-        let bounds = model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact)));
-        let bounds: Vec<Bounds> = bounds.collect();
+        let bounds = bounds_of(model);
         let mut rows = Self {
             sense: model.sense(),
             offset: model.offset().clone(),

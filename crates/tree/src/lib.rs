@@ -98,6 +98,7 @@ pub use cutting::CutsResult;
 pub use cycle::Cycle;
 pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
 pub use inspect::{NodeView, ViolatedSubset};
+pub use proving::standings;
 pub use root::{RootResult, Status};
 pub use search::{Progress, Search, Work};
 pub use settings::{Branching, Cuts, NodeWork, Selection, Settings};

@@ -65,8 +65,9 @@ impl Proving {
     }
 }
 
-/// A basis of the kernel as the proof reads it.
-fn standings(basis: &Basis) -> Standings {
+/// A basis of the kernel as the proof reads it. `O(columns + rows)`.
+#[must_use]
+pub fn standings(basis: &Basis) -> Standings {
     let one = |basic: bool, upper: bool| match (basic, upper) {
         (true, _) => Standing::Basic,
         (false, true) => Standing::Upper,

@@ -68,10 +68,7 @@ impl Relaxation {
         let rows = (0..model.row_count()).map(RowId::from_index);
         let written: Vec<bool> = rows.clone().map(|row| model.row_is_in(row)).collect();
         let origins = rows.filter(|row| written[row.index()]).map(RowOrigin::Written).collect();
-        let exact_bound =
-            |id: Option<model::NumberId>| id.map(|n| model.numbers().exact(n).clone());
-        let bounds =
-            model.columns().iter().map(|c| (exact_bound(c.lower), exact_bound(c.upper))).collect();
+        let bounds = proof::bounds_of(model);
         Ok(Self {
             model: Rc::clone(model),
             slack: simplex.basis(),

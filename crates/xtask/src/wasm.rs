@@ -15,10 +15,18 @@ use crate::process::{output, run};
 use crate::workplace::Workplace;
 
 /// Turns of each.
-const TURNS: usize = 5;
+const TURNS: usize = 3;
 
-/// Runs of a rival in a turn.
-const RUNS: &str = "4";
+/// What the runs of a rival in a turn take, in milliseconds: Node compiles what runs often anew with
+/// more effort, and that is what a search of some length meets.
+const SPAN: f64 = 1500.0;
+
+/// The most that the runs of all rivals of a scenario in a turn take natively, in milliseconds, when
+/// they are more than the fewest.
+const MOST: f64 = 8000.0;
+
+/// The fewest and the most runs of a rival in a turn.
+const RUNS: (f64, f64) = (4.0, 100.0);
 
 /// Ticks a slice, as a worker takes.
 const SLICE: &str = "1000000";
@@ -56,15 +64,16 @@ fn compared(
     scenario: &Path,
 ) -> Result<Vec<(String, f64, f64)>, Fault> {
     let mut best: Vec<(String, f64, f64)> = Vec::new();
+    let once = native_times(native, scenario, "1")?;
+    let runs = runs(&once.iter().map(|(_, time)| *time).collect::<Vec<_>>());
+    let Some(runs) = runs.map(|runs| runs.to_string()) else { return Ok(best) };
     let name = scenario.file_stem().unwrap_or_default().to_string_lossy().into_owned();
     for _ in 0..TURNS {
-        let mut command = Command::new(native);
-        command.arg("digest").arg(scenario).args(["--slice", SLICE, "--runs", RUNS]);
-        let ours = times(&output(&mut command)?)?;
+        let ours = native_times(native, scenario, &runs)?;
         let mut node = Command::new("node");
         node.arg(place.web().join("worker/digest.js"));
         node.arg(place.dist().join("hullward.html")).arg(scenario);
-        node.args([&ours.len().to_string(), SLICE, RUNS]);
+        node.args([&ours.len().to_string(), SLICE, &runs]);
         let shipped = times(&output(&mut node)?)?;
         for (place, ((letter, native), (_, wasm))) in ours.into_iter().zip(shipped).enumerate() {
             match best.get_mut(place) {
@@ -74,6 +83,26 @@ fn compared(
         }
     }
     Ok(best)
+}
+
+fn native_times(
+    native: &PathBuf,
+    scenario: &Path,
+    runs: &str,
+) -> Result<Vec<(String, f64)>, Fault> {
+    let mut command = Command::new(native);
+    command.arg("digest").arg(scenario).args(["--slice", SLICE, "--runs", runs]);
+    times(&output(&mut command)?)
+}
+
+/// How often each rival runs in a turn, from the milliseconds of one run of each; `None` where none
+/// takes long enough to be compared.
+fn runs(once: &[f64]) -> Option<f64> {
+    let compared = once.iter().copied().filter(|&time| time >= LEAST);
+    let shortest = compared.reduce(least)?;
+    let within = least(SPAN / shortest, MOST / once.iter().sum::<f64>());
+    let often = if within < RUNS.0 { RUNS.0 } else { within.ceil() };
+    Some(least(often, RUNS.1))
 }
 
 fn least(a: f64, b: f64) -> f64 {
@@ -93,6 +122,15 @@ fn times(text: &str) -> Result<Vec<(String, f64)>, Fault> {
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn short_rivals_run_often_and_long_ones_a_few_times() {
+        assert_eq!(runs(&[0.1, 1.9]), None);
+        assert_eq!(runs(&[0.1, 2.5]), Some(100.0));
+        assert_eq!(runs(&[50.0, 100.0]), Some(30.0));
+        assert_eq!(runs(&[50.0, 700.0]), Some(11.0));
+        assert_eq!(runs(&[5000.0, 6000.0]), Some(4.0));
+    }
 
     #[test]
     fn times_stand_behind_digests() {

@@ -9,6 +9,7 @@ pub(crate) const USAGE: &str = "\
 cargo xtask bench lp [PART]... [options]
     roots         root relaxations beside HiGHS and microlp, presolve off
     children      solves after one bound change
+    subtours      subtours on demand to the root bound, the linear programs alone
     presolved     roots with presolve beside roots without, ours and HiGHS
     proofs        what the exact check of a root costs beside its solve
     growth        time over size
@@ -26,6 +27,7 @@ cargo xtask bench wasm
 pub(crate) struct Tables {
     pub(crate) roots: bool,
     pub(crate) children: bool,
+    pub(crate) subtours: bool,
     pub(crate) presolved: bool,
     pub(crate) proofs: bool,
     pub(crate) growth: bool,
@@ -68,9 +70,14 @@ impl Arguments {
         self.seeds.first().copied().unwrap_or(1)
     }
 
+    /// Seed 1 and the fresh ones.
+    pub(crate) fn seeds(&self) -> impl Iterator<Item = u64> + '_ {
+        std::iter::once(1).chain(self.seeds.iter().copied())
+    }
+
     /// The problems, one after the other: the set with seed 1, then with the fresh seeds.
     pub(crate) fn problems(&self) -> Vec<Named> {
-        let seeds = std::iter::once(1).chain(self.seeds.iter().copied());
+        let seeds = self.seeds();
         let wanted: Vec<&str> = NAMES.into_iter().filter(|name| self.wants(name)).collect();
         let all = seeds.flat_map(|seed| wanted.iter().map(move |name| named(name, seed)));
         all.flatten().collect()
@@ -100,6 +107,7 @@ pub(crate) fn parse(words: &[String]) -> Result<Arguments, String> {
         match word {
             "roots" => tables.roots = true,
             "children" => tables.children = true,
+            "subtours" => tables.subtours = true,
             "presolved" => tables.presolved = true,
             "proofs" => tables.proofs = true,
             "growth" => tables.growth = true,
@@ -114,6 +122,7 @@ pub(crate) fn parse(words: &[String]) -> Result<Arguments, String> {
         tables = Tables {
             roots: true,
             children: true,
+            subtours: true,
             presolved: true,
             proofs: true,
             growth: true,

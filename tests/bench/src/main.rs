@@ -23,6 +23,8 @@ mod sampling;
 mod shadow;
 mod solvers;
 mod statistics;
+mod subtours;
+mod table;
 
 #[path = "../../../crates/lp/tests/suite/instances.rs"]
 mod instances;
@@ -60,6 +62,9 @@ fn carry_out(arguments: &Arguments) {
             }
             if parts.children {
                 children::run(arguments);
+            }
+            if parts.subtours {
+                subtours::run(arguments);
             }
             if parts.presolved {
                 presolved::run(arguments);

@@ -9,9 +9,10 @@ use crate::sampling::{interleaved, solves};
 use crate::shadow::Shadow;
 use crate::solvers::{Solver, problem, sample};
 use crate::statistics::median;
-use lp::{Basis, Limits, Simplex};
+use lp::{Limits, Simplex};
 use model::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
-use proof::{Bounds, Budget, Certifier, ExactRows, Progress, Standing, Standings, Wish};
+use proof::{Budget, Certifier, ExactRows, Progress, Standings, Wish, bounds_of};
+use tree::standings;
 
 /// Measures and prints.
 pub(crate) fn run(arguments: &Arguments) {
@@ -66,32 +67,13 @@ fn check(model: &Model, basis: &Standings, count: usize) -> (bool, f64) {
             let rows = ExactRows::new(model);
             let wish = Wish::Optimum(None);
             let mut certifier =
-                Certifier::new(bounds(model), basis.clone(), wish, Budget::default());
+                Certifier::new(bounds_of(model), basis.clone(), wish, Budget::default());
             while certifier.advance(&rows, u64::MAX) == Progress::Working {}
             exact = certifier.is_exact();
         }
         exact
     });
     (exact, seconds / count as f64)
-}
-
-fn bounds(model: &Model) -> Vec<Bounds> {
-    let exact = |id| model.numbers().exact(id).clone();
-    model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact))).collect()
-}
-
-fn standings(basis: &Basis) -> Standings {
-    let one = |basic: bool, upper: bool| match (basic, upper) {
-        (true, _) => Standing::Basic,
-        (false, true) => Standing::Upper,
-        (false, false) => Standing::Lower,
-    };
-    let column = |j| one(basis.is_basic_column(j), basis.is_upper_column(j));
-    let row = |i| one(basis.is_basic_row(i), basis.is_upper_row(i));
-    Standings {
-        columns: (0..basis.column_count()).map(column).collect(),
-        rows: (0..basis.row_count()).map(row).collect(),
-    }
 }
 
 /// The problem in fractions: its numbers are whole or short, so each is its own float.

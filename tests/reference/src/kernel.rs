@@ -1,36 +1,12 @@
 //! A model for the kernel alone, without the search around it.
 
-use lp::{Basis, Col, Problem};
+use lp::{Col, Problem};
 use model::{Model, NumberId, RowId, Sense, nearest_f64};
-use proof::{Bounds, Standing, Standings};
 
 /// A side or bound; `infinite` where there is none.
 #[must_use]
 pub fn side(model: &Model, id: Option<NumberId>, infinite: f64) -> f64 {
     id.map_or(infinite, |id| model.numbers().float(id))
-}
-
-/// A basis of the kernel as the proof reads it.
-#[must_use]
-pub fn standings(basis: &Basis) -> Standings {
-    let one = |basic: bool, upper: bool| match (basic, upper) {
-        (true, _) => Standing::Basic,
-        (false, true) => Standing::Upper,
-        (false, false) => Standing::Lower,
-    };
-    let column = |j| one(basis.is_basic_column(j), basis.is_upper_column(j));
-    let row = |i| one(basis.is_basic_row(i), basis.is_upper_row(i));
-    Standings {
-        columns: (0..basis.column_count()).map(column).collect(),
-        rows: (0..basis.row_count()).map(row).collect(),
-    }
-}
-
-/// The bounds of a model's columns as the proof reads them.
-#[must_use]
-pub fn bounds(model: &Model) -> Vec<Bounds> {
-    let exact = |id: NumberId| model.numbers().exact(id).clone();
-    model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact))).collect()
 }
 
 /// The relaxation by the rows that are in, its costs turned round when the model maximises; the

@@ -10,15 +10,15 @@
 use std::rc::Rc;
 
 use hullward_tests_reference::falsify::Falsifier;
-use hullward_tests_reference::kernel::{bounds, problem, standings};
+use hullward_tests_reference::kernel::problem;
 use hullward_tests_reference::parts::Parts;
 use hullward_tests_reference::random_lp::{KINDS, random_lp};
 use hullward_tests_reference::round_trip::root;
 use hullward_tests_reference::{golden, open_data};
 use lp::{Limits, Outcome, Simplex};
 use model::{Model, Number, Sense, mps};
-use proof::{Bounds, Budget, Certifier, ExactRows, Progress, Standings, Wish};
-use tree::Status;
+use proof::{Bounds, Budget, Certifier, ExactRows, Progress, Standings, Wish, bounds_of};
+use tree::{Status, standings};
 
 /// What a proof from a false basis may cost.
 const BUDGET: Budget = Budget { ticks: 3_000_000, bits: 6_000 };
@@ -106,7 +106,7 @@ fn falsify(name: &str, model: Model, foreign: &[f64], seen: &mut Seen) -> Vec<f6
         return Vec::new();
     };
     let basis = standings(&simplex.basis());
-    let (rows, bounds, sense) = (ExactRows::new(&model), bounds(&model), model.sense());
+    let (rows, bounds, sense) = (ExactRows::new(&model), bounds_of(&model), model.sense());
     let root = root(&Rc::new(model));
     assert!(root.exact, "{name} is not exact");
     let optimum = root.checked_bound.unwrap();
@@ -212,7 +212,7 @@ fn mended(name: &str, model: &Model, seen: &mut Seen) {
     let mut parts = Parts::of(model);
     parts.widen();
     let mended = parts.build();
-    let (rows, bounds) = (ExactRows::new(&mended), bounds(&mended));
+    let (rows, bounds) = (ExactRows::new(&mended), bounds_of(&mended));
     if bounds
         .iter()
         .any(|(lower, upper)| lower.as_ref().zip(upper.as_ref()).is_some_and(|(l, u)| l > u))

@@ -44,6 +44,8 @@ pub(crate) struct DualState {
     pub(crate) perturbed: bool,
     /// False when perturbation is not allowed.
     pub(crate) may_perturb: bool,
+    /// Which detour is gone, with costs changed from the start; 0 for none.
+    pub(crate) detour: u32,
     /// Steps without change of the dual objective after which costs are perturbed.
     pub(crate) patience: u32,
     /// The dual objective's gain since the method began (working costs).
@@ -60,6 +62,9 @@ pub(crate) fn begin(core: &mut Core, state: &mut DualState) {
     state.stall = 0;
     state.gain = 0.0;
     state.patience = perturb::patience(core);
+    if state.detour > 0 {
+        perturb::perturb_costs(core, state.detour);
+    }
 }
 
 /// One step.
@@ -76,7 +81,7 @@ pub(crate) fn step(core: &mut Core, state: &mut DualState) -> DualStep {
         return DualStep::Moved;
     }
     if state.may_perturb && !state.perturbed && state.stall >= state.patience {
-        perturb::perturb_costs(core);
+        perturb::perturb_costs(core, 0);
         state.perturbed = true;
         state.stall = 0;
     }

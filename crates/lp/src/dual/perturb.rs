@@ -11,7 +11,7 @@
 //! Source: Koberstein 2005, section 6.3.
 
 use crate::basis::Status;
-use crate::random::half_to_one;
+use crate::random::{detoured, half_to_one};
 use crate::state::Core;
 use crate::tolerances::{DUAL, PERTURB_COST, STALL};
 
@@ -50,10 +50,12 @@ pub(super) fn patience(core: &Core) -> u32 {
     }
 }
 
-/// Perturbs the working costs of nonbasic variables; reduced costs keep their signs.
-pub(crate) fn perturb_costs(core: &mut Core) {
+/// Perturbs the working costs of nonbasic variables; reduced costs keep their signs. On a detour the
+/// change is as large as the costs: the method shall end at another vertex.
+pub(crate) fn perturb_costs(core: &mut Core, detour: u32) {
+    let share = if detour == 0 { PERTURB_COST } else { 1.0 };
     for j in 0..core.variables() {
-        let size = PERTURB_COST * (1.0 + core.cost[j].abs()) * half_to_one(j);
+        let size = share * (1.0 + core.cost[j].abs()) * half_to_one(detoured(j, detour));
         let change = match core.status[j] {
             Status::Lower => size,
             Status::Upper => -size,

@@ -15,6 +15,7 @@ mod ratio;
 use crate::basis::Status;
 use crate::state::Core;
 use crate::tolerances::STALL;
+pub(crate) use pricing::list_all;
 use ratio::Block;
 
 /// How one step of the method went.
@@ -51,6 +52,7 @@ pub(crate) struct PrimalState {
 /// Resets reference weights and memory.
 pub(crate) fn begin(core: &mut Core, state: &mut PrimalState) {
     core.devex.fill(1.0);
+    pricing::list_all(core);
     state.keeps_weights = core.weight.iter().any(|&weight| weight != 1.0);
     state.aside.clear();
     state.stall = 0;

@@ -1,5 +1,6 @@
 //! Coefficients from 1e-4 to 1e4 times small integers, equalities that hold up to rounding only,
-//! multiplied rows: all but one solve in two hundred end with an outcome that passes its checks.
+//! multiplied rows: all but one solve in a thousand end with an outcome that passes its checks. Thirteen
+//! in ten thousand did not before there were attempts from other starts and with rows of some width.
 
 use crate::families::INFINITY;
 use crate::random::Random;
@@ -61,7 +62,7 @@ pub(crate) fn wide(seed: u64, boxed: bool) -> Shadow {
 }
 
 #[test]
-fn wide_coefficients_stop_one_solve_in_two_hundred_at_most() {
+fn wide_coefficients_stop_one_solve_in_a_thousand_at_most() {
     let mut stopped = Vec::new();
     for seed in 0..1500 {
         let shadow = wide(70_000 + seed, seed % 2 == 0);
@@ -69,5 +70,5 @@ fn wide_coefficients_stop_one_solve_in_two_hundred_at_most() {
             stopped.push((seed, format!("{reason:?}")));
         }
     }
-    assert!(stopped.len() <= 7, "{stopped:?}");
+    assert!(stopped.len() <= 1, "{stopped:?}");
 }

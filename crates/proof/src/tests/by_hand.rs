@@ -1,6 +1,6 @@
 //! Small programs whose optima are worked out by hand.
 
-use crate::{Bounds, ExactRows, Place, Point, bound, infeasible, violations};
+use crate::{ExactRows, Place, Point, bound, bounds_of, infeasible, violations};
 use model::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
 
 fn ratio(top: i64, bottom: u64) -> Number {
@@ -14,11 +14,6 @@ fn column(lower: Option<i64>, upper: Option<i64>, cost: Number, integer: bool) -
 fn row(entries: &[(u32, Number)], lower: Option<Number>, upper: Option<Number>) -> Row {
     let entries = entries.iter().map(|(column, a)| (ColumnId(*column), a.clone())).collect();
     Row { entries, lower, upper }
-}
-
-fn bounds(model: &Model) -> Vec<Bounds> {
-    let exact = |id| model.numbers().exact(id).clone();
-    model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact))).collect()
 }
 
 /// min x + y, 3x + y ≥ 2, x + 3y ≥ 2, x, y ≥ 0: optimum 1 at (½, ½), duals (¼, ¼).
@@ -41,17 +36,17 @@ fn two_rows(sense: Sense) -> Model {
 fn true_duals_give_the_optimum_exactly() {
     let model = two_rows(Sense::Minimise);
     let rows = ExactRows::new(&model);
-    assert_eq!(bound(&rows, &bounds(&model), &[0.25, 0.25]), Some(Number::from(11)));
+    assert_eq!(bound(&rows, &bounds_of(&model), &[0.25, 0.25]), Some(Number::from(11)));
     let noisy = [0.25 + 3e-12, 0.25 - 1e-12];
-    assert_eq!(bound(&rows, &bounds(&model), &noisy), Some(Number::from(11)));
+    assert_eq!(bound(&rows, &bounds_of(&model), &noisy), Some(Number::from(11)));
 }
 
 #[test]
 fn maximising_turns_the_bound_round() {
     let model = two_rows(Sense::Maximise);
     let rows = ExactRows::new(&model);
-    assert_eq!(bound(&rows, &bounds(&model), &[0.25, 0.25]), Some(Number::from(9)));
-    let weak = bound(&rows, &bounds(&model), &[0.125, 0.125]).unwrap();
+    assert_eq!(bound(&rows, &bounds_of(&model), &[0.25, 0.25]), Some(Number::from(9)));
+    let weak = bound(&rows, &bounds_of(&model), &[0.125, 0.125]).unwrap();
     assert!(weak > Number::from(9));
 }
 
@@ -60,11 +55,11 @@ fn wrong_duals_give_weaker_bounds() {
     let model = two_rows(Sense::Minimise);
     let rows = ExactRows::new(&model);
     for y in [[0.1, 0.1], [0.0, 0.0], [-5.0, 0.2], [1e6, 1e6], [0.3, 0.3]] {
-        if let Some(value) = bound(&rows, &bounds(&model), &y) {
+        if let Some(value) = bound(&rows, &bounds_of(&model), &y) {
             assert!(value <= Number::from(11), "{y:?} gave {value}");
         }
     }
-    assert_eq!(bound(&rows, &bounds(&model), &[f64::NAN, 0.0]), None);
+    assert_eq!(bound(&rows, &bounds_of(&model), &[f64::NAN, 0.0]), None);
     assert_eq!(bound(&rows, &[], &[0.25, 0.25]), None);
 }
 
@@ -77,8 +72,8 @@ fn simple_fractions_are_found() {
     b.row(&[], row(&[(0, Number::from(3))], Some(Number::from(1)), None)).unwrap();
     let model = b.build();
     let rows = ExactRows::new(&model);
-    assert_eq!(bound(&rows, &bounds(&model), &[1.0, 0.0]), Some(ratio(756, 5)));
-    assert_eq!(bound(&rows, &bounds(&model), &[0.0, 7.0 / 3.0]), Some(ratio(7, 3)));
+    assert_eq!(bound(&rows, &bounds_of(&model), &[1.0, 0.0]), Some(ratio(756, 5)));
+    assert_eq!(bound(&rows, &bounds_of(&model), &[0.0, 7.0 / 3.0]), Some(ratio(7, 3)));
 }
 
 /// The rows 0.3x ≥ 1 and coefficients with many decimals are scaled, not rounded.
@@ -89,7 +84,7 @@ fn decimals_are_exact() {
     b.row(&[], row(&[(0, ratio(3, 10))], Some(Number::from(1)), None)).unwrap();
     let model = b.build();
     let rows = ExactRows::new(&model);
-    assert_eq!(bound(&rows, &bounds(&model), &[0.1 / 0.3]), Some(ratio(1, 3)));
+    assert_eq!(bound(&rows, &bounds_of(&model), &[0.1 / 0.3]), Some(ratio(1, 3)));
 }
 
 /// A free column needs its reduced cost to be 0 exactly: min x + y, x free, x + 3y ≥ 1,
@@ -105,9 +100,9 @@ fn free_columns_are_mended() {
     b.row(&[], row(&[(0, three), (1, -one)], Some(Number::from(-4)), None)).unwrap();
     let model = b.build();
     let rows = ExactRows::new(&model);
-    let exact = bound(&rows, &bounds(&model), &[0.4, 0.2]).unwrap();
+    let exact = bound(&rows, &bounds_of(&model), &[0.4, 0.2]).unwrap();
     assert_eq!(exact, ratio(-2, 5));
-    let off = bound(&rows, &bounds(&model), &[0.4 + 1e-7, 0.2 - 1e-7]).unwrap();
+    let off = bound(&rows, &bounds_of(&model), &[0.4 + 1e-7, 0.2 - 1e-7]).unwrap();
     assert!(off <= exact && off > &exact - ratio(1, 1_000_000), "{off}");
 }
 
@@ -116,7 +111,7 @@ fn free_columns_are_mended() {
 fn wrong_signs_are_clipped() {
     let model = two_rows(Sense::Minimise);
     let rows = ExactRows::new(&model);
-    assert_eq!(bound(&rows, &bounds(&model), &[-5.0, 0.2]), Some(ratio(52, 5)));
+    assert_eq!(bound(&rows, &bounds_of(&model), &[-5.0, 0.2]), Some(ratio(52, 5)));
 }
 
 /// A free column with coefficients 3 and 7 in multiples of the grid step that neither divides:
@@ -133,9 +128,9 @@ fn coefficients_that_do_not_divide() {
     let model = b.build();
     let rows = ExactRows::new(&model);
     let optimum = ratio(-40, 3);
-    assert_eq!(bound(&rows, &bounds(&model), &[4.0 / 3.0, 0.0]), Some(optimum.clone()));
+    assert_eq!(bound(&rows, &bounds_of(&model), &[4.0 / 3.0, 0.0]), Some(optimum.clone()));
     for off in [1e-8, 3e-8, 7e-8] {
-        let near = bound(&rows, &bounds(&model), &[4.0 / 3.0 - off, off]).unwrap();
+        let near = bound(&rows, &bounds_of(&model), &[4.0 / 3.0 - off, off]).unwrap();
         assert!(near <= optimum && near > &optimum - ratio(1, 100_000), "{near}");
     }
 }
@@ -155,8 +150,8 @@ fn chains_of_rows_bound_columns() {
     }
     let model = b.build();
     let rows = ExactRows::new(&model);
-    assert_eq!(bound(&rows, &bounds(&model), &[]), Some(Number::from(-8)));
-    let mut wider = bounds(&model);
+    assert_eq!(bound(&rows, &bounds_of(&model), &[]), Some(Number::from(-8)));
+    let mut wider = bounds_of(&model);
     wider[8].1 = None;
     assert_eq!(bound(&rows, &wider, &[]), None);
 }
@@ -175,7 +170,7 @@ fn pressed(most: i64, upper: Option<i64>) -> Model {
 #[test]
 fn rays_prove_or_do_not() {
     let model = pressed(2, Some(9));
-    let (rows, all) = (ExactRows::new(&model), bounds(&model));
+    let (rows, all) = (ExactRows::new(&model), bounds_of(&model));
     assert!(infeasible(&rows, &all, &[1.0, -1.0]));
     assert!(infeasible(&rows, &all, &[-1.0, 1.0]));
     assert!(infeasible(&rows, &all, &[1e-9, -1e-9]));
@@ -188,7 +183,7 @@ fn rays_prove_or_do_not() {
 fn no_ray_proves_a_falsehood() {
     for upper in [None, Some(9)] {
         let model = pressed(3, upper);
-        let (rows, all) = (ExactRows::new(&model), bounds(&model));
+        let (rows, all) = (ExactRows::new(&model), bounds_of(&model));
         for ray in [[1.0, -1.0], [-1.0, 1.0], [1.0, -0.999_999], [1e12, -1.0], [3.0, -1.0]] {
             assert!(!infeasible(&rows, &all, &ray), "{ray:?}");
         }
@@ -257,7 +252,7 @@ fn free_columns_that_share_rows_are_closed_together() {
     b.row(&[], row(&[one(0), one(2)], four.clone(), four)).unwrap();
     b.row(&[], row(&[one(3), one(4)], Some(Number::ONE), None)).unwrap();
     let model = b.build();
-    let (rows, all) = (ExactRows::new(&model), bounds(&model));
+    let (rows, all) = (ExactRows::new(&model), bounds_of(&model));
     for y in [[0.0, 0.0, 0.0, 1.0], [1e-4, -2e-4, 3e-4, 0.999], [1e-3, 7e-4, -2e-4, 0.9]] {
         let proved = bound(&rows, &all, &y).unwrap();
         assert!(proved <= Number::ONE && proved > ratio(8, 10), "{y:?} gave {proved}");

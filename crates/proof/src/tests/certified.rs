@@ -6,7 +6,7 @@ use model::{
 };
 use proptest::prelude::*;
 
-use crate::{Bounds, ExactRows, bound};
+use crate::{ExactRows, bound, bounds_of};
 
 fn ratio(top: i64, bottom: u64) -> Number {
     Number::from_parts(top.into(), bottom.into())
@@ -51,11 +51,6 @@ fn made(columns: &[Column], rows: &[(Vec<i64>, i64)], bottom: u64, huge: &Number
     Made { model: b.build(), multipliers, optimum }
 }
 
-fn bounds(model: &Model) -> Vec<Bounds> {
-    let exact = |id| model.numbers().exact(id).clone();
-    model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact))).collect()
-}
-
 fn draws(
     width: std::ops::Range<i64>,
 ) -> impl Strategy<Value = (Vec<Column>, Vec<(Vec<i64>, i64)>)> {
@@ -74,7 +69,7 @@ proptest! {
         let made = made(&columns, &rows, 9_973, &Number::ONE);
         let y: Vec<f64> = made.multipliers.iter().map(nearest_f64).collect();
         let exact = ExactRows::new(&made.model);
-        let proved = bound(&exact, &bounds(&made.model), &y);
+        let proved = bound(&exact, &bounds_of(&made.model), &y);
         let proved = proved.expect("rows and signs allow a proof");
         prop_assert!(proved <= made.optimum);
         let loss = nearest_f64(&(&made.optimum - &proved));
@@ -87,7 +82,7 @@ proptest! {
         let made = made(&columns, &rows, 630, &Number::ONE);
         let y: Vec<f64> = made.multipliers.iter().map(nearest_f64).collect();
         let exact = ExactRows::new(&made.model);
-        prop_assert_eq!(bound(&exact, &bounds(&made.model), &y), Some(made.optimum));
+        prop_assert_eq!(bound(&exact, &bounds_of(&made.model), &y), Some(made.optimum));
     }
 
     /// Coefficients of thirty digits do not fit 128 bits, and change nothing.
@@ -97,6 +92,6 @@ proptest! {
         let made = made(&columns, &rows, 630, &huge);
         let y: Vec<f64> = made.multipliers.iter().map(nearest_f64).collect();
         let exact = ExactRows::new(&made.model);
-        prop_assert_eq!(bound(&exact, &bounds(&made.model), &y), Some(made.optimum));
+        prop_assert_eq!(bound(&exact, &bounds_of(&made.model), &y), Some(made.optimum));
     }
 }

@@ -4,7 +4,8 @@ use model::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row,
 use proptest::prelude::*;
 
 use crate::{
-    Bounds, Budget, Certifier, ExactRows, Progress, Standing, Standings, Wish, bound, infeasible,
+    Bounds, Budget, Certifier, ExactRows, Progress, Standing, Standings, Wish, bound, bounds_of,
+    infeasible,
 };
 
 /// min c'x, L ≤ Ax ≤ U, l ≤ x ≤ u in small whole numbers; sides may be missing.
@@ -135,11 +136,6 @@ fn solved(matrix: &[Vec<i64>], right: &[i64]) -> Option<Vec<Number>> {
     Some(replaced.collect())
 }
 
-fn bounds(model: &Model) -> Vec<Bounds> {
-    let exact = |id| model.numbers().exact(id).clone();
-    model.columns().iter().map(|c| (c.lower.map(exact), c.upper.map(exact))).collect()
-}
-
 proptest! {
     #![proptest_config(ProptestConfig::with_cases(400))]
 
@@ -156,11 +152,11 @@ proptest! {
         if let Some(least) = least {
             let model = program.model(Sense::Minimise);
             let rows = ExactRows::new(&model);
-            let proved = bound(&rows, &bounds(&model), y);
+            let proved = bound(&rows, &bounds_of(&model), y);
             prop_assert!(proved.is_none_or(|proved| proved <= least));
-            prop_assert!(!infeasible(&rows, &bounds(&model), y));
+            prop_assert!(!infeasible(&rows, &bounds_of(&model), y));
             let turned = program.model(Sense::Maximise);
-            let proved = bound(&ExactRows::new(&turned), &bounds(&turned), y);
+            let proved = bound(&ExactRows::new(&turned), &bounds_of(&turned), y);
             prop_assert!(proved.is_none_or(|proved| proved >= -least));
         }
     }
@@ -171,7 +167,7 @@ proptest! {
     fn optimal_multipliers_prove_the_optimum(program in program(), noise in -1e-11..1e-11_f64) {
         let model = program.model(Sense::Minimise);
         let rows = ExactRows::new(&model);
-        let all = bounds(&model);
+        let all = bounds_of(&model);
         let mut optimal = 0;
         for (x, y) in program.vertices() {
             let value = product(&program.costs, &x);
@@ -196,10 +192,10 @@ fn a_box_that_is_too_small() {
     };
     let model = program.model(Sense::Minimise);
     assert!(program.vertices().is_empty());
-    assert!(infeasible(&ExactRows::new(&model), &bounds(&model), &[1.0]));
+    assert!(infeasible(&ExactRows::new(&model), &bounds_of(&model), &[1.0]));
     program.rows[0].1 = Some(6);
     let model = program.model(Sense::Minimise);
-    assert!(!infeasible(&ExactRows::new(&model), &bounds(&model), &[1.0]));
+    assert!(!infeasible(&ExactRows::new(&model), &bounds_of(&model), &[1.0]));
 }
 
 /// Every choice of as many basic variables as there are rows, with every choice of sides for the
@@ -246,7 +242,7 @@ fn a_basis_that_is_singular_in_exact_arithmetic_is_repaired() {
         rows: vec![(vec![1, 1, 1], Some(2), None), (vec![3, 3, 3], Some(6), None)],
     };
     let model = program.model(Sense::Minimise);
-    let (rows, all) = (ExactRows::new(&model), bounds(&model));
+    let (rows, all) = (ExactRows::new(&model), bounds_of(&model));
     let basis = Standings {
         columns: vec![Standing::Basic, Standing::Basic, Standing::Lower],
         rows: vec![Standing::Lower, Standing::Lower],
@@ -267,7 +263,7 @@ proptest! {
         let least = program.vertices().iter().map(|(x, _)| product(&program.costs, x)).min();
         let sense = if maximise { Sense::Maximise } else { Sense::Minimise };
         let model = program.model(sense);
-        let (rows, all) = (ExactRows::new(&model), bounds(&model));
+        let (rows, all) = (ExactRows::new(&model), bounds_of(&model));
         let sign = Number::from(if maximise { -1 } else { 1 });
         let (mut exact, mut refuted) = (0, 0);
         for basis in bases(&program) {

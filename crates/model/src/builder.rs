@@ -100,6 +100,12 @@ impl ModelBuilder {
         VariableId::from_index(self.model.variables.len() - 1)
     }
 
+    /// Makes room for exactly so many more columns of so many places each.
+    pub fn reserve_columns(&mut self, count: usize, places: usize) {
+        self.model.columns.reserve_exact(count);
+        self.model.column_tuples.reserve(count, places);
+    }
+
     /// Adds a column to the variable that was started last (an unnamed one if none was).
     pub fn column(&mut self, tuple: &[LabelId], spec: &ColumnSpec) -> Result<ColumnId, ModelError> {
         if self.model.variables.is_empty() {
@@ -201,7 +207,8 @@ impl ModelBuilder {
 
     /// The finished model.
     #[must_use]
-    pub fn build(self) -> Model {
+    pub fn build(mut self) -> Model {
+        self.model.entries.shrink_to_fit();
         self.model
     }
 }

@@ -127,6 +127,11 @@ impl Tuples {
         self.start.push(u32::try_from(self.labels.len()).unwrap_or(u32::MAX));
     }
 
+    pub(crate) fn reserve(&mut self, count: usize, places: usize) {
+        self.start.reserve_exact(count);
+        self.labels.reserve_exact(count.saturating_mul(places));
+    }
+
     fn get(&self, index: usize) -> &[LabelId] {
         &self.labels[self.start[index] as usize..self.start[index + 1] as usize]
     }

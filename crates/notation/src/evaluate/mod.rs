@@ -1,5 +1,6 @@
 //! Exact evaluation on an instance: numbers in rationals, sets in the order of their listing.
 
+mod columns;
 mod guard;
 mod linear;
 mod number;
@@ -12,6 +13,7 @@ mod walk;
 use std::cell::{Cell, RefCell};
 use std::rc::Rc;
 
+pub(crate) use columns::Columns;
 pub(crate) use guard::Guard;
 pub(crate) use linear::{Linear, Rounded, Scale};
 pub(crate) use tuples::TupleMap;
@@ -50,12 +52,6 @@ pub(crate) fn moderate(number: Number) -> Evaluated<Number> {
 pub(crate) enum Values {
     Single(Value),
     Indexed(TupleMap<Value>),
-}
-
-/// The columns of a variable by index tuple.
-#[derive(Debug, Default)]
-pub(crate) struct Columns {
-    pub(crate) at: TupleMap<u32>,
 }
 
 /// A plan with the values of its symbols on an instance.
@@ -132,21 +128,21 @@ impl Evaluator {
         nodes.iter().map(|node| self.element(node, env)).collect()
     }
 
-    /// What a map holds at the tuple that the indices make.
-    fn at_key<'m, V>(
+    /// What is found at the tuple that the indices make.
+    fn at_key<V>(
         &self,
-        map: &'m TupleMap<V>,
         indices: &[Node],
         env: &mut Environment,
-    ) -> Evaluated<Option<&'m V>> {
+        find: impl Fn(&[Element]) -> V,
+    ) -> Evaluated<V> {
         let mut few = [Element::default(); 4];
         if indices.len() > few.len() {
-            return Ok(map.get(&self.tuple(indices, env)?));
+            return Ok(find(&self.tuple(indices, env)?));
         }
         for (place, node) in few.iter_mut().zip(indices) {
             *place = self.element(node, env)?;
         }
-        Ok(map.get(&few[..indices.len()]))
+        Ok(find(&few[..indices.len()]))
     }
 
     /// The value of a symbol at its indices.
@@ -160,13 +156,15 @@ impl Evaluator {
         let name = || self.plan.symbols[id].name.clone();
         match &self.values[id] {
             Some(Values::Single(value)) => Ok(value.clone()),
-            Some(Values::Indexed(values)) => match self.at_key(values, indices, env)? {
-                Some(value) => Ok(value.clone()),
-                None => {
-                    let key = self.tuple(indices, env)?;
-                    fail(rows::outside(&self.shown(&name(), &key, false), span))
+            Some(Values::Indexed(values)) => {
+                match self.at_key(indices, env, |key| values.get(key))? {
+                    Some(value) => Ok(value.clone()),
+                    None => {
+                        let key = self.tuple(indices, env)?;
+                        fail(rows::outside(&self.shown(&name(), &key, false), span))
+                    }
                 }
-            },
+            }
             None => fail(data::unavailable(&name(), span)),
         }
     }
@@ -189,8 +187,8 @@ impl Evaluator {
         span: Span,
         env: &mut Environment,
     ) -> Evaluated<u32> {
-        match self.at_key(&self.columns[number].at, indices, env)? {
-            Some(&column) => Ok(column),
+        match self.at_key(indices, env, |key| self.columns[number].get(key))? {
+            Some(column) => Ok(column),
             None => {
                 let key = self.tuple(indices, env)?;
                 let variable = &self.plan.variables[number];

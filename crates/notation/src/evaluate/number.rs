@@ -119,7 +119,8 @@ impl Evaluator {
                 (Some(sum), Big::Sum) => sum + value,
                 (Some(product), Big::Product) => product * value,
                 (Some(best), Big::Least) => best.min(value),
-                (Some(best), Big::Greatest) => best.max(value),
+                // a union is a set, and never comes here
+                (Some(best), Big::Greatest | Big::Union | Big::Intersection) => best.max(value),
             };
             total = Some(moderate(next)?);
             Ok(())

@@ -28,12 +28,6 @@ fn pack(tuple: &[Element]) -> Option<u128> {
     })
 }
 
-fn unpack(key: u128) -> Vec<Element> {
-    let low = |key: u128| Element(u32::try_from(key & u128::from(u32::MAX)).unwrap_or(0));
-    let length = (0..=PACKED).find(|&n| key >> (32 * n) == n as u128).unwrap_or(0);
-    (0..length).rev().map(|place| low(key >> (32 * place))).collect()
-}
-
 impl<V> TupleMap<V> {
     /// `O(log values)`.
     pub(crate) fn get(&self, tuple: &[Element]) -> Option<&V> {
@@ -49,12 +43,6 @@ impl<V> TupleMap<V> {
             Some(key) => self.packed.insert(key, value),
             None => self.long.insert(tuple.to_vec(), value),
         }
-    }
-
-    /// All tuples with their values.
-    pub(crate) fn iter(&self) -> impl Iterator<Item = (Vec<Element>, &V)> {
-        let packed = self.packed.iter().map(|(key, value)| (unpack(*key), value));
-        packed.chain(self.long.iter().map(|(tuple, value)| (tuple.clone(), value)))
     }
 
     pub(crate) fn len(&self) -> usize {
@@ -83,8 +71,6 @@ mod tests {
         for (value, places) in all.iter().enumerate() {
             assert_eq!(map.get(&tuple(places)), Some(&value));
         }
-        let listed: Vec<Vec<Element>> = map.iter().map(|(tuple, _)| tuple).collect();
-        assert!(all.iter().all(|places| listed.contains(&tuple(places))), "{listed:?}");
         assert!(!map.contains(&tuple(&[1, 1])));
         assert_eq!(map.insert(&tuple(&[0]), 9), Some(1));
     }

@@ -6,6 +6,7 @@
 mod closed_form;
 mod columns;
 mod conditions;
+mod costs;
 mod rows;
 mod subsets;
 
@@ -81,11 +82,12 @@ pub struct Expansion {
     env: Environment,
     labels: Vec<Option<LabelId>>,
     draft: Draft,
-    /// Bounds of the columns so far.
-    bounds: Vec<(Option<Number>, Option<Number>)>,
+    /// The bounds of each column so far, among those that occur.
+    bounds: Vec<u32>,
+    ends: Vec<(Option<Number>, Option<Number>)>,
     /// Whether each column stands in a row.
     in_rows: Vec<bool>,
-    costs: BTreeMap<u32, Number>,
+    costs: costs::Costs,
     offset: Number,
     nonzeros: usize,
     /// Index tuples looked at in the stage at hand.
@@ -113,8 +115,9 @@ impl Expansion {
             labels: Vec::new(),
             draft: Draft::default(),
             bounds: Vec::new(),
+            ends: Vec::new(),
             in_rows: Vec::new(),
-            costs: BTreeMap::new(),
+            costs: costs::Costs::default(),
             offset: Number::ZERO,
             nonzeros: 0,
             steps: 0,
@@ -315,8 +318,7 @@ impl Expansion {
         let offset = std::mem::take(&mut self.offset);
         self.offset = crate::evaluate::moderate(offset + linear.constant)?;
         for (column, _, coefficient) in linear.terms {
-            let cost = self.costs.entry(column).or_default();
-            *cost = crate::evaluate::moderate(std::mem::take(cost) + coefficient)?;
+            self.costs.add(column, coefficient)?;
         }
         Ok(())
     }
@@ -324,11 +326,16 @@ impl Expansion {
     fn offset_and_costs(&mut self) {
         self.builder.offset(std::mem::take(&mut self.offset));
         self.unbounded_columns();
-        for (column, cost) in std::mem::take(&mut self.costs) {
-            if let Err(error) = self.builder.cost(model::ColumnId(column), &cost) {
+        for (column, cost) in std::mem::take(&mut self.costs).iter() {
+            if let Err(error) = self.builder.cost(model::ColumnId(column), cost) {
                 self.errors.push(size::model(error.to_string(), crate::place::Span::default()));
             }
         }
+    }
+
+    /// The bounds of a column.
+    fn ends_of(&self, column: usize) -> &(Option<Number>, Option<Number>) {
+        &self.ends[self.bounds[column] as usize]
     }
 
     fn mark_columns(&mut self, columns: impl Iterator<Item = usize>) {
@@ -345,18 +352,18 @@ impl Expansion {
         for (number, variable) in plan.variables.iter().enumerate() {
             let endless = |column: u32| {
                 let index = column as usize;
-                let cost = self.costs.get(&column).filter(|cost| !cost.is_zero())?;
+                let cost = self.costs.get(column).filter(|cost| !cost.is_zero())?;
                 let falls = (*cost > Number::ZERO) != plan.maximise;
-                let (lower, upper) = &self.bounds[index];
+                let (lower, upper) = self.ends_of(index);
                 let open = if falls { lower.is_none() } else { upper.is_none() };
                 (open && !self.in_rows[index]).then_some(())
             };
-            let columns = &self.evaluator.columns[number].at;
-            let Some((tuple, _)) = columns.iter().find(|(_, column)| endless(**column).is_some())
+            let columns = &self.evaluator.columns[number];
+            let Some((tuple, _)) = columns.iter().find(|(_, column)| endless(*column).is_some())
             else {
                 continue;
             };
-            let name = self.evaluator.shown(&variable.name, &tuple, is_arrow(&variable.roots));
+            let name = self.evaluator.shown(&variable.name, tuple, is_arrow(&variable.roots));
             self.warnings.push(crate::diagnostic::rows::unbounded(&name, variable.span));
         }
     }

@@ -163,7 +163,7 @@ impl Expansion {
     fn activity(&self, row: &Row) -> (Option<Number>, Option<Number>) {
         let (mut least, mut most) = (Some(Number::ZERO), Some(Number::ZERO));
         for (column, a) in &row.entries {
-            let (lower, upper) = &self.bounds[column.index()];
+            let (lower, upper) = self.ends_of(column.index());
             let (low, high) = if *a > Number::ZERO { (lower, upper) } else { (upper, lower) };
             let one = *a == Number::ONE;
             let add = |sum: Option<Number>, x: &Option<Number>| match (sum, x) {

@@ -189,6 +189,11 @@ fn model_in_mps(text: &str, rival: &Rival, stops: Vec<String>) -> Result<Loading
         }
     }
     let title = entitled(&rival.title, &model);
+    let found = notation::lint_rows(&model);
+    let complaints = complaints
+        .into_iter()
+        .chain(found.iter().map(|found| of_diagnostic(text, found)))
+        .collect();
     Ok(Loading::Model(Box::new(Loaded { title, complaints, stops, model: Rc::new(model) })))
 }
 

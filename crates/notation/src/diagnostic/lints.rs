@@ -135,6 +135,23 @@ pub(crate) fn twin_rows(
     Diagnostic::warning("lint.twin-rows", span, message)
 }
 
+/// Rows without entries.
+pub(crate) fn empty_rows(family: &str, (rows, example): (usize, &str)) -> Diagnostic {
+    let counted = if rows == 1 { "the row".to_owned() } else { format!("{rows} of the rows of") };
+    let message =
+        format!("{counted} {} without an entry, such as {}", short(family), short_tuple(example));
+    Diagnostic::warning("lint.empty-rows", Span::default(), message)
+}
+
+/// A model that is too large to be looked at.
+pub(crate) fn not_looked_at(entries: u64, columns: usize, limit: u64) -> Diagnostic {
+    let message = format!(
+        "pitfalls are sought in models of up to {limit} entries and columns; this one has {entries} entries \
+         and {columns} columns, so nothing is said of them"
+    );
+    Diagnostic::info("lint.too-large", Span::default(), message)
+}
+
 /// Columns that the model cannot tell apart.
 pub(crate) fn twin_columns(
     name: &str,

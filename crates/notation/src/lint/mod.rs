@@ -7,6 +7,7 @@
 //! | `big_m.rs` | rows switched by a constant over 10⁴, with the smallest that bounds prove |
 //! | `columns.rs` | variables bounded nowhere; directions without end |
 //! | `twins.rs` | duplicate rows and columns |
+//! | `empty.rs` | rows without entries, which only a file can hold |
 //!
 //! A pitfall is told only where the rows prove what is said of it. What the expansion sees by
 //! itself (families that are empty, that never bind, rows that cannot hold) it tells itself.
@@ -14,6 +15,7 @@
 mod big_m;
 mod bounds;
 mod columns;
+mod empty;
 mod facts;
 mod order;
 mod pairs;
@@ -61,12 +63,12 @@ impl<'s> Subject<'s> {
 }
 
 /// The pitfalls of a model that a tree gave on an instance, each with the figures it rests on and
-/// a mend where one is known. Nothing is said of models with more than 60,000 entries.
-/// `O(entries · log entries)` exact operations.
+/// a mend where one is known. Of models with more than 60,000 entries it is said that they were
+/// not looked at. `O(entries · log entries)` exact operations.
 #[must_use]
 pub fn lint(tree: &Formulation, checked: &Checked, model: &Model) -> Vec<Diagnostic> {
-    if model.statistics().nonzeros > LIMIT || model.columns().len() as u64 > LIMIT {
-        return Vec::new();
+    if let Some(told) = too_large(model) {
+        return vec![told];
     }
     let subject = Subject { tree, plan: &checked.plan, facts: Facts::new(model) };
     let found = [
@@ -77,4 +79,28 @@ pub fn lint(tree: &Formulation, checked: &Checked, model: &Model) -> Vec<Diagnos
         twins::lint(&subject),
     ];
     tidy(found.concat())
+}
+
+/// The pitfalls of a model without a text, such as one in MPS: constants, variables and
+/// directions without an end, empty rows, twins. Places and mends in a text it has none.
+#[must_use]
+pub fn lint_rows(model: &Model) -> Vec<Diagnostic> {
+    if let Some(told) = too_large(model) {
+        return vec![told];
+    }
+    let (tree, plan) = (Formulation::default(), Plan::default());
+    let subject = Subject { tree: &tree, plan: &plan, facts: Facts::new(model) };
+    let found = [
+        big_m::lint(&subject),
+        columns::lint(&subject),
+        twins::lint(&subject),
+        empty::lint(&subject),
+    ];
+    tidy(found.concat())
+}
+
+fn too_large(model: &Model) -> Option<Diagnostic> {
+    let (entries, columns) = (model.statistics().nonzeros, model.columns().len());
+    let large = entries > LIMIT || columns as u64 > LIMIT;
+    large.then(|| crate::diagnostic::lints::not_looked_at(entries, columns, LIMIT))
 }

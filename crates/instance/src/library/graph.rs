@@ -136,9 +136,34 @@ pub(super) fn dimacs<'a>(
     }
     let mut instance = Instance::new(Reader::Graph);
     instance.title = title;
+    let colours = first_fit(n, &graph.edges);
+    facts.push(format!(
+        "h = {colours}: so many colours takes the first that is free, vertex by vertex; w = 1 at every vertex."
+    ));
+    let ones = counted(n).into_iter().map(|vertex| (vec![vertex], Number::ONE)).collect();
+    instance.set("w", Datum::Table { arity: 1, cells: ones });
+    instance.set("h", Datum::Number(colours.into()));
     instance.set("V", Datum::Labels(counted(n)));
     instance.set("E", Datum::Tuples { arity: 2, rows: graph.rows });
     Some((instance, facts))
+}
+
+/// How many colours are used where each vertex, those of most edges first, takes the first that
+/// no neighbour has. O(n · n).
+fn first_fit(n: usize, edges: &BTreeSet<(usize, usize)>) -> usize {
+    let mut beside = vec![Vec::new(); n + 1];
+    for &(i, j) in edges {
+        beside[i].push(j);
+        beside[j].push(i);
+    }
+    let mut order: Vec<usize> = (1..=n).collect();
+    order.sort_by_key(|&vertex| std::cmp::Reverse(beside[vertex].len()));
+    let mut colour = vec![0; n + 1];
+    for vertex in order {
+        let taken: BTreeSet<usize> = beside[vertex].iter().map(|&other| colour[other]).collect();
+        colour[vertex] = (1..=n).find(|one| !taken.contains(one)).unwrap_or(n);
+    }
+    colour.into_iter().max().unwrap_or(0)
 }
 
 /// What a SteinLib file holds beside its graph.

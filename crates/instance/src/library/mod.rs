@@ -8,9 +8,9 @@
 //! | `sites` | OR-Library cap | `I`, `J`, `q`, `f`, `d`, `c` |
 //! | `medians` | OR-Library pmed | `I`, `J`, `d` (shortest paths), `p`, `w` |
 //! | `tardiness` | OR-Library wt | `J`, `p`, `w`, `d` |
-//! | `job-shop` | jobs by machine and duration | `J`, `M`, `K`, `m`, `p` |
+//! | `job-shop` | jobs by machine and duration | `J`, `M`, `N`, `p`, `H`; `K`, `m`, `p` where a job returns to a machine |
 //! | `quadratic` | QAPLIB | `N`, `L`, `f`, `d` |
-//! | `graph` | DIMACS graphs for colouring | `V`, `E` |
+//! | `graph` | DIMACS graphs for colouring | `V`, `E`, `h`, `w` |
 //! | `steiner` | SteinLib | `V`, `E`, `A`, `c`, `R`, `r` |
 //! | `routing` | `n K Q`, then `q x y` for each stop, the depot first | `V`, `c`, `q`, `Q`, `K`, `r` |
 //!

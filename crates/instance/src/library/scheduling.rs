@@ -1,9 +1,9 @@
 //! Job shops, and weighted tardiness on one machine.
 
-use std::collections::BTreeSet;
+use std::collections::{BTreeMap, BTreeSet};
 
 use crate::complaint::plural;
-use crate::instance::Reader;
+use crate::instance::{Datum, Reader};
 use crate::number::{Number, number_text, total, total_text};
 
 use super::parts::{Part, Parts};
@@ -36,8 +36,13 @@ pub(super) fn job_shop(stream: &mut Stream) -> Option<Part> {
     let loads = load(&machines, &durations, m);
     let size = format!("{}, {}", plural(n, "job", "jobs"), plural(m, "machine", "machines"));
     let longest = durations.chunks_exact(m).filter_map(total).max();
+    let meaning = if odd == 0 {
+        "job j takes p on machine m, and N holds its steps from a machine to the next"
+    } else {
+        "operation k of job j stands on machine m and takes p"
+    };
     let mut facts = vec![
-        format!("{size}; operation k of job j stands on machine m and takes p."),
+        format!("{size}; {meaning}."),
         format!(
             "The longest job takes {}, the busiest machine is at work for {}.",
             number_text(&longest.unwrap_or(Number::ZERO)),
@@ -53,19 +58,79 @@ pub(super) fn job_shop(stream: &mut Stream) -> Option<Part> {
             plural(odd, "job does not", "jobs do not")
         ));
     }
-    let data = vec![
-        ("J", counted(n)),
-        ("M", counted(m)),
-        ("K", counted(m)),
-        ("m", matrix(machines, m)),
-        ("p", matrix(durations, m)),
-    ];
+    let mut data = vec![("J", counted(n)), ("M", counted(m))];
+    if odd == 0 {
+        let (own, fact) = by_machine(&machines, &durations, m);
+        data.extend(own);
+        facts.push(fact);
+    } else {
+        data.extend([("K", counted(m)), ("m", matrix(machines, m)), ("p", matrix(durations, m))]);
+    }
     let mut found = instance(Reader::JobShop, data);
     let name =
         stream.names.iter().rev().find(|(at, _)| *at <= begins).map(|(_, name)| name.clone());
     found.title = name.unwrap_or_default();
     let word = if found.title.is_empty() { size } else { format!("{}, {size}", found.title) };
     Some((found, facts, word))
+}
+
+/// Where every job visits every machine once: its steps `N` from a machine to the next, and its
+/// time `p` on each machine; and the length `H` of a plan, with what is said of it.
+fn by_machine(
+    machines: &[Number],
+    durations: &[Number],
+    m: usize,
+) -> ([(&'static str, Datum); 3], String) {
+    let (mut rows, mut cells) = (Vec::new(), BTreeMap::new());
+    let jobs = machines.chunks_exact(m).zip(durations.chunks_exact(m));
+    for (job, (machines, durations)) in (1_usize..).zip(jobs) {
+        let job = job.to_string();
+        for pair in machines.windows(2) {
+            rows.push(vec![job.clone(), number_text(&pair[0]), number_text(&pair[1])]);
+        }
+        for (machine, duration) in machines.iter().zip(durations) {
+            cells.insert(vec![job.clone(), number_text(machine)], duration.clone());
+        }
+    }
+    let length = greedy(machines, durations, m);
+    let fact = format!(
+        "H = {}: so long is the plan that always starts the step which can start first.",
+        number_text(&length)
+    );
+    let steps = ("N", Datum::Tuples { arity: 3, rows });
+    let times = ("p", Datum::Table { arity: 2, cells });
+    ([steps, times, ("H", Datum::Number(length))], fact)
+}
+
+/// The length of the plan that always starts the step which can start first, of several the one
+/// of the job with the most work left, then of the first job. O(steps · jobs).
+fn greedy(machines: &[Number], durations: &[Number], m: usize) -> Number {
+    let jobs = durations.len() / m.max(1);
+    let place = |at: usize| usize::try_from(machines[at].numerator().clone()).unwrap_or(0);
+    let mut next = vec![0; jobs];
+    let mut done = vec![Number::ZERO; jobs];
+    let mut left: Vec<Number> =
+        durations.chunks_exact(m).map(|job| total(job).unwrap_or(Number::ZERO)).collect();
+    let mut free = vec![Number::ZERO; m + 1];
+    for _ in 0..jobs * m {
+        let start = |job: usize| {
+            let machine = &free[place(job * m + next[job])];
+            if *machine > done[job] { machine.clone() } else { done[job].clone() }
+        };
+        let open = (0..jobs).filter(|&job| next[job] < m).map(|job| (start(job), job));
+        let first = open.reduce(|best, one| {
+            let sooner = one.0 < best.0 || one.0 == best.0 && left[one.1] > left[best.1];
+            if sooner { one } else { best }
+        });
+        let Some((start, job)) = first else { break };
+        let at = job * m + next[job];
+        let end = &start + &durations[at];
+        left[job] = &left[job] - &durations[at];
+        free[place(at)].clone_from(&end);
+        done[job] = end;
+        next[job] += 1;
+    }
+    done.into_iter().max().unwrap_or(Number::ZERO)
 }
 
 /// The work of each machine.

@@ -83,7 +83,15 @@ fn job_shops_alone_and_together() {
     let body = "2 3\n0 5 1 6 2 7\n2 1 0 2 1 3\n";
     let one = well(&format!("# instance tiny\n{body}"), Reader::JobShop);
     assert_eq!(one.instance.as_ref().map(|i| i.title.as_str()), Some("tiny"));
-    assert_eq!([cell(&one, "m", &["2", "1"]), cell(&one, "p", &["1", "3"])], ["3", "7"]);
+    // Job 2 goes from machine 3 by 1 to 2; its second operation stands on machine 1.
+    assert_eq!([cell(&one, "p", &["2", "1"]), cell(&one, "p", &["1", "3"])], ["2", "7"]);
+    let step = |from: &str, to: &str| vec!["2".to_owned(), from.to_owned(), to.to_owned()];
+    assert!(
+        matches!(one.instance.as_ref().and_then(|i| i.get("N")), Some(Datum::Tuples { rows, .. })
+        if rows[2..] == [step("3", "1"), step("1", "2")])
+    );
+    let twice = read("2 2\n0 5 0 6\n1 7 0 8\n", Some(Reader::JobShop));
+    assert_eq!([cell(&twice, "m", &["1", "2"]), cell(&twice, "p", &["1", "2"])], ["1", "6"]);
     assert!(one.facts.iter().any(|fact| fact.contains("longest job takes 18, the busiest machine is at work for 9")), "{:?}", one.facts);
     let two = read_part(
         &format!(" instance a\n+++\nmade up\n{body} instance b\n{body}"),

@@ -98,6 +98,12 @@ impl<'i> Binder<'i> {
         self.names.get(&symbol.name).map_or(symbol.name.as_str(), String::as_str)
     }
 
+    /// The name of a symbol, with the one it was given where that is another.
+    fn called(&self, symbol: &Symbol) -> String {
+        let key = self.key(symbol);
+        if key == symbol.name { key.to_owned() } else { format!("{} (as {key})", symbol.name) }
+    }
+
     fn supplied(&mut self, symbol: &Symbol) -> Option<&'i Datum> {
         let key = self.key(symbol).to_owned();
         let datum = self.instance.get(&key)?;
@@ -137,8 +143,9 @@ impl<'i> Binder<'i> {
 
     /// A datum in the shape that the formulation wants.
     fn read(&self, symbol: &Symbol, datum: &Datum) -> Evaluated<Value> {
-        let wrong =
-            |wanted: &str| fail(message::shape(&symbol.name, wanted, noun(datum), symbol.span));
+        let wrong = |wanted: &str| {
+            fail(message::shape(&self.called(symbol), wanted, noun(datum), symbol.span))
+        };
         match (&symbol.shape, datum) {
             (Shape::Number, Datum::Number(value)) => Ok(Value::Number(value.clone())),
             (Shape::Number, Datum::Element(text)) => match text.parse::<i64>() {
@@ -174,7 +181,14 @@ impl<'i> Binder<'i> {
             Datum::Table { arity, cells } if *arity == roots.len() && roots.len() > 1 => {
                 cells.keys().map(|key| key.iter().map(|cell| pool.intern(cell)).collect()).collect()
             }
-            _ => return fail(message::shape(&symbol.name, &wanted, noun(datum), symbol.span)),
+            _ => {
+                return fail(message::shape(
+                    &self.called(symbol),
+                    &wanted,
+                    noun(datum),
+                    symbol.span,
+                ));
+            }
         };
         let mut set = Set::new(roots.len(), tuples);
         set.by_value = matches!(datum, Datum::Integers(_));
@@ -343,7 +357,12 @@ impl<'i> Binder<'i> {
             }
             _ => {
                 let wanted = format!("indexed by {places}");
-                return fail(message::shape(&symbol.name, &wanted, noun(datum), symbol.span));
+                return fail(message::shape(
+                    &self.called(symbol),
+                    &wanted,
+                    noun(datum),
+                    symbol.span,
+                ));
             }
         }
         Ok(cells)

@@ -45,7 +45,7 @@ pub use guide::{Section, guide};
 pub use help::{Help, codes, help};
 pub use latex::latex;
 pub use linearise::offers;
-pub use lint::lint;
+pub use lint::{lint, lint_rows};
 pub use matching::{Found, Match, Offer, assumed, matches};
 pub use mathml::typeset;
 pub use parse::{NESTING_LIMIT, Parse, TEXT_LIMIT, parse};

@@ -156,11 +156,14 @@ impl Matcher<'_> {
         let suits = free.filter(|(_, datum)| fits(symbol, datum) && self.holds_labels(id, datum));
         let scored: Vec<(usize, &str)> =
             suits.map(|(name, _)| (shared(&wording, &words(name)).count(), name)).collect();
+        if scored.is_empty() {
+            return self.pairs(id);
+        }
         let Some(best) = scored.iter().map(|(score, _)| *score).max() else { return };
         let mut leading = scored.iter().filter(|(score, _)| *score == best);
         if let (Some(&(_, name)), None) = (leading.next(), leading.next()) {
             let reason = match scored.len() {
-                1 => self.only(id),
+                1 => self.only(id, self.instance.get(name)),
                 _ => {
                     let theirs = words(name);
                     let shared: Vec<&str> = shared(&wording, &theirs).map(String::as_str).collect();
@@ -172,8 +175,52 @@ impl Matcher<'_> {
         }
     }
 
+    /// A set of pairs takes those for which a table has a value: the set that the reader made of
+    /// them, else the cells of the table that is indexed by it, else of the only one.
+    fn pairs(&mut self, id: SymbolId) {
+        let symbol = &self.symbols[id];
+        let Shape::Set(roots) = &symbol.shape else { return };
+        if roots.len() < 2 || !symbol.indices.is_empty() {
+            return;
+        }
+        let made: Vec<&str> = self
+            .instance
+            .data()
+            .filter(|(name, datum)| self.instance.assumed.contains(*name) && fits(symbol, datum))
+            .map(|(name, _)| name)
+            .collect();
+        let tables = |own: bool| -> Vec<&str> {
+            let indexed = |name: &str| {
+                self.taken.iter().any(|(&other, (taken, _))| {
+                    taken == name && self.symbols[other].tuples == Some(id)
+                })
+            };
+            let fitting = self.instance.data().filter(|(name, datum)| {
+                matches!(datum, Datum::Table { .. })
+                    && fits(symbol, datum)
+                    && (!own || indexed(name))
+            });
+            fitting.map(|(name, _)| name).collect()
+        };
+        let (name, reason) = match (&made[..], &tables(true)[..], &tables(false)[..]) {
+            ([one], ..) => {
+                (*one, format!("the pairs that have a value, which the table calls {one}"))
+            }
+            ([], [one], _) => {
+                (*one, format!("the pairs for which {one}, indexed by it, has a value"))
+            }
+            ([], [], [one]) => {
+                (*one, format!("the pairs for which {one}, the only table of pairs, has a value"))
+            }
+            _ => return,
+        };
+        let name = name.to_owned();
+        self.reasons.insert(id, reason);
+        self.taken.insert(id, (name, Found::Assumed));
+    }
+
     /// Why the only datum that suits is that.
-    fn only(&self, id: SymbolId) -> String {
+    fn only(&self, id: SymbolId, datum: Option<&Datum>) -> String {
         let symbol = &self.symbols[id];
         let over = match symbol.indices.len() {
             0 => String::new(),
@@ -181,6 +228,9 @@ impl Matcher<'_> {
             places => format!(" over {places} indices"),
         };
         let what = match &symbol.shape {
+            Shape::Set(_) if matches!(datum, Some(Datum::Table { .. })) => {
+                return "the only table whose cells could be its members".to_owned();
+            }
             Shape::Set(_) => {
                 let indexed = self
                     .taken
@@ -372,5 +422,33 @@ mod tests {
         assert_eq!((lines[0].1.as_deref(), lines[0].2), (Some("J"), Found::Assumed));
         let lines = found(&format!("data\n  \\mathcal{{J}}\n  J\n{model}"));
         assert_eq!(lines.iter().filter(|line| line.1.as_deref() == Some("J")).count(), 1);
+    }
+
+    /// A set of pairs was taken from the cells of a table only when its name was A.
+    #[test]
+    fn a_set_of_pairs_is_the_cells_that_have_a_value() {
+        let text = |set: &str| {
+            format!(
+                "data\n  V\n  {set} ⊆ V × V\n  c_{{i,j}} ∀ (i,j) ∈ {set}\nminimise\n  Σ_{{(i,j) ∈ {set}}} c_{{i,j}} x_{{i,j}}\n\
+                subject to\n  x_{{i,j}} ∈ {{0,1}} ∀ (i,j) ∈ {set}\n"
+            )
+        };
+        let table = "\tAsh\tBirch\tCedar\nAsh\t\t3\t4\nBirch\t2\t\t\nCedar\t5\t8\t\n";
+        for set in ["A", "E", "F", "arcs"] {
+            let lines = matched(&text(set), table, &[]);
+            assert_eq!(lines[1].taken.as_deref(), Some("A"), "{set}: {lines:?}");
+            assert!(lines[1].is_well());
+        }
+        let lines = matched(&text("E"), table, &[]);
+        assert_eq!(lines[1].reason, "the pairs that have a value, which the table calls A");
+        let (checked, _) = crate::check(&crate::parse(&text("E")).tree);
+        let mut instance = Instance::new(instance::Reader::Blocks);
+        let labels = ["a", "b"].map(str::to_owned);
+        instance.set("V", Datum::Labels(labels.to_vec()));
+        let cells = [(labels.to_vec(), model::Number::ONE)].into_iter().collect();
+        instance.set("c", Datum::Table { arity: 2, cells });
+        let lines = matches(&text("E"), &checked, &instance, &BTreeMap::new());
+        assert_eq!((lines[1].taken.as_deref(), lines[1].found), (Some("c"), Found::Assumed));
+        assert!(lines[1].reason.contains("for which c"), "{}", lines[1].reason);
     }
 }

@@ -280,6 +280,8 @@ fn big_sign(big: Big) -> &'static str {
         Big::Product => "∏",
         Big::Least => "min",
         Big::Greatest => "max",
+        Big::Union => "⋃",
+        Big::Intersection => "⋂",
     }
 }
 

@@ -205,6 +205,10 @@ pub enum Big {
     Least,
     /// `max_{…}`
     Greatest,
+    /// `⋃_{…}`
+    Union,
+    /// `⋂_{…}`
+    Intersection,
 }
 
 /// Functions of numbers.
@@ -301,7 +305,7 @@ pub(crate) fn each_name(expression: &mut Expression, visit: &mut dyn FnMut(&mut 
 }
 
 /// All expressions directly inside one, to change them.
-fn children_mut(kind: &mut Kind) -> Vec<&mut Expression> {
+pub(crate) fn children_mut(kind: &mut Kind) -> Vec<&mut Expression> {
     match kind {
         Kind::Number(_) | Kind::Infinity | Kind::EmptySet | Kind::NumberSet(_) => Vec::new(),
         Kind::Name(name) => {

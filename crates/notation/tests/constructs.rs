@@ -524,3 +524,77 @@ fn a_named_row_with_a_datum_or_an_index_beside_one_variable_is_a_row() {
     let text = "minimise\n  Σ_{k ∈ {1..3}} z_k\nsubject to\n  z_k ≥ k ∀ k ∈ {1..3}\n";
     assert_eq!(made(text, &kitchen()).columns().len(), 3);
 }
+
+/// What papers write and the parser did not take.
+#[test]
+fn unions_powers_groups_and_cases_inside_sums() {
+    let data = "  N_i ⊆ V ∀ i ∈ V\n";
+    let union = rows(data, "  U = ⋃_{k ∈ V} N_k", "  z_i ≥ 1 ∀ i ∈ U (rows)");
+    let listed = "  U = {i ∈ V : |{k ∈ V : i ∈ N_k}| ≥ 1}";
+    let sorted = |mut rows: Vec<String>| {
+        rows.sort_unstable();
+        rows
+    };
+    let listed = rows(data, listed, "  z_i ≥ 1 ∀ i ∈ U (rows)");
+    assert!(union.len() > 1);
+    assert_eq!(sorted(union), listed);
+    let both = "  z_i ≥ z_j ∀ j ∈ V, i ∈ \\bigcap_{k \\in V : k \\le j} N_k (rows)";
+    let counted =
+        "  z_i ≥ z_j ∀ j ∈ V, i ∈ V : |{k ∈ V : k ≤ j, i ∈ N_k}| = |{k ∈ V : k ≤ j}| (rows)";
+    assert!(!rows(data, "", both).is_empty());
+    assert_eq!(sorted(rows(data, "", both)), sorted(rows(data, "", counted)));
+    let data = "  q\n  h \\in \\mathbb{Z}_+  a remark behind the sign\n  1 ≤ g ∈ ℤ_+\n";
+    let (model, _) = {
+        let text = format!(
+            "data\n  V\n{data}minimise\n  Σ_{{i ∈ V}} z_i\nsubject to\n  z_i ≥ 0 ∀ i ∈ V\n  \
+             h z_i ≥ 2^(q − 1) + g ∀ i ∈ V (rows)\n"
+        );
+        let mut instance = kitchen();
+        for (name, value) in [("q", 4), ("h", 2), ("g", 1)] {
+            instance.set(name, instance::Datum::Number(model::Number::from(value)));
+        }
+        hullward_notation::model(&text, &instance, &Default::default(), &Default::default())
+            .unwrap()
+    };
+    assert_eq!(rows_of(&model, "rows")[0], "2 z[Ash] ≥ 9");
+    assert_eq!(rows("", "", "  {z}_{i} + {z_j} ≤ 1 ∀ i, j ∈ V : i < j (rows)").len(), 10);
+    let cases = "  z_i + \\begin{cases} 2 & \\text{if } i = j \\\\ 3 & \\text{otherwise} \\end{cases} ≤ 9 ∀ i, j ∈ V (rows)";
+    let found = rows("", "", cases);
+    // the label is that of the first case
+    assert_eq!(found.len(), 5);
+    assert!(found.iter().all(|row| row.ends_with("≤ 7")), "{found:?}");
+    let brace = "  \\left. z_i ≤ 9 \\\\ z_i ≤ 4 \\right\\} \\quad ∀ i ∈ V";
+    assert_eq!(bounds(&made(&around("  V", "", brace), &kitchen()), "z", &["Ash"]), "[0, 4]");
+    // ⌈⌉ of a minimum times a sum: the product is the body
+    let least = rows("", "", "  z_i ≤ min_{k ∈ {2..3}} k · Σ_{l ∈ {1..2}} l ∀ i ∈ V (rows)");
+    assert_eq!(least[0], "z[Ash] ≤ 6");
+}
+
+/// As the text layer of a PDF gives sums and subscripts.
+#[test]
+fn sums_and_subscripts_as_a_pdf_gives_them() {
+    let text = |sum: &str| {
+        format!(
+            "data\n  n\n  a_j ∀ j ∈ {{1..n}}\n\nminimise {sum}\nsubject to\nxj ≥ 1,  j = 1, …, n\nxj ∈ {{0,1}},  j = 1, …, n\n"
+        )
+    };
+    let mut instance = instance::Instance::new(instance::Reader::Blocks);
+    instance.set("n", instance::Datum::Number(model::Number::from(3)));
+    let cells = (1..=3).map(|j| (vec![j.to_string()], model::Number::from(2 * j))).collect();
+    instance.set("a", instance::Datum::Table { arity: 1, cells });
+    let plain = made(&text("∑_{j=1}^{n} a_j x_j").replace("xj", "x_j"), &instance);
+    for sum in [
+        "n∑j=1 aj xj",
+        "∑nj=1 ajxj",
+        "∑n\nj=1 ajxj",
+        "n\n∑\nj=1\najxj",
+        "∑ n j=1 aj xj",
+        "∑j=1^n aj xj",
+        "∑ j=1^n ajxj",
+        "0+n∑j=1 ajxj",
+    ] {
+        assert_eq!(made(&text(sum), &instance), plain, "{sum}");
+    }
+    let parsed = hullward_notation::parse(&text("∑ j=1 aj xj"));
+    assert_eq!(parsed.diagnostics[0].code, "syntax.upper-limit");
+}

@@ -21,7 +21,9 @@ use hullward_notation::{
 };
 
 /// Codes that no text alone can give, each with what gives it.
-const BY_OTHER_MEANS: [(&str, &str); 13] = [
+const BY_OTHER_MEANS: [(&str, &str); 15] = [
+    ("lint.empty-rows", "a model in MPS"),
+    ("lint.too-large", "more than 60,000 entries"),
     ("syntax.too-deep", "a hundred brackets"),
     ("syntax.too-long", "two million bytes"),
     ("syntax.number-too-long", "four hundred digits"),

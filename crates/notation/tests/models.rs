@@ -11,7 +11,7 @@
 
 use std::collections::BTreeMap;
 
-use hullward_notation::{Diagnostic, latex, model, parse, print};
+use hullward_notation::{Diagnostic, assumed, check, latex, model, parse, print};
 
 /// A file in its three parts.
 struct Paper {
@@ -56,7 +56,9 @@ fn wrong(paper: &Paper) -> Option<String> {
     let Some(instance) = reading.instance else {
         return Some(format!("  the instance: {:?}\n", reading.complaints));
     };
-    let made = model(&paper.text, &instance, &paper.names, &BTreeMap::new());
+    let (checked, _) = check(&parse(&paper.text).tree);
+    let (names, _) = assumed(&paper.text, &checked, &instance, &paper.names);
+    let made = model(&paper.text, &instance, &names, &BTreeMap::new());
     let (made, _) = match made {
         Ok(made) => made,
         Err(found) => return Some(told(&paper.text, &found)),
@@ -101,4 +103,9 @@ fn models_of_papers_come_out() {
 #[test]
 fn models_that_nobody_looked_at_come_out() {
     all_come_out("models/unseen");
+}
+
+#[test]
+fn models_as_journals_print_them_come_out() {
+    all_come_out("models/printed");
 }

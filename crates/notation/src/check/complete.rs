@@ -28,6 +28,7 @@ pub(super) fn completed(tree: &Formulation) -> Completed {
     }
     out.statements(&declared);
     out.habits = habits(&out.tree, &declared);
+    out.definitions(&declared);
     out
 }
 
@@ -150,6 +151,33 @@ fn rename(tree: &mut Formulation, aliases: &BTreeMap<String, String>) {
 }
 
 impl Completed {
+    /// `N_i = {…}` without a quantifier holds for every `i` of the set over which `i` runs
+    /// elsewhere.
+    fn definitions(&mut self, declared: &BTreeSet<String>) {
+        for line in &mut self.tree.definitions {
+            let [left] = &line.left[..] else { continue };
+            let Kind::Name(name) = &left.kind else { continue };
+            let free = |index: &Expression| {
+                bare_name(index).filter(|n| !declared.contains(&n.text)).map(|n| n.text.clone())
+            };
+            let indices: Option<Vec<String>> = name.indices.iter().map(free).collect();
+            let Some(indices) = indices.filter(|all| !all.is_empty()) else { continue };
+            if !line.clauses.is_empty() || !indices.iter().all(|i| self.habits.contains_key(i)) {
+                continue;
+            }
+            let mut items = Vec::new();
+            for (text, index) in indices.iter().zip(&name.indices) {
+                let Some(set) = self.habits.get(text).cloned() else { continue };
+                let said = crate::print::expression(&set);
+                self.notes.push(message::inferred(text, &said, index.span));
+                let links = vec![(Relation::In, Expression { span: index.span, ..set })];
+                let kind = Kind::Chain(Box::new(index.clone()), links);
+                items.push(Expression { kind, span: index.span });
+            }
+            line.clauses.push(Clause { items, such_that: Vec::new(), span: left.span });
+        }
+    }
+
     /// Domain lines of variables without their indices become one for each way in which the
     /// variable is used.
     fn statements(&mut self, declared: &BTreeSet<String>) {

@@ -49,6 +49,9 @@ impl Checker<'_> {
                 let base = self.numeric(base)?;
                 self.power(base, exponent)
             }
+            Kind::Big(big @ (Big::Union | Big::Intersection), clause, body) => {
+                self.big_set(*big, clause, body, span)
+            }
             Kind::Big(big, clause, body) => self.big(*big, clause, body, span),
             Kind::Function(function, arguments) => self.function(*function, arguments, span),
             Kind::Tuple(_) => self.report(message::expected("a number or a set", "a tuple", span)),
@@ -83,6 +86,13 @@ impl Checker<'_> {
 
     /// An expression that is a number, perhaps with variables; whole elements count.
     pub(super) fn numeric(&mut self, expression: &Expression) -> Option<Typed> {
+        // {c}: a group of TeX
+        if let Kind::Set(items) = &expression.kind
+            && let [only] = &items[..]
+            && !matches!(only.kind, Kind::Range(..))
+        {
+            return self.numeric(only);
+        }
         let typed = self.expression(expression)?;
         self.as_number(typed)
     }

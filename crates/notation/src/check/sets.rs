@@ -4,7 +4,7 @@ use super::{Bound, Checker, Form, Global, Typed};
 use crate::diagnostic::shapes as message;
 use crate::place::Span;
 use crate::plan::{Node, Pattern, Root, SetOperator, Shape, Slot, Step};
-use crate::syntax::{Additive, Clause, Expression, Kind, Multiplicative, Name};
+use crate::syntax::{Additive, Big, Clause, Expression, Kind, Multiplicative, Name, Relation};
 
 impl Checker<'_> {
     /// An expression that is a set, with the roots of its places; `∅` has none.
@@ -21,6 +21,7 @@ impl Checker<'_> {
     pub(super) fn is_set(&self, expression: &Expression) -> bool {
         match &expression.kind {
             Kind::Set(_) | Kind::Range(..) | Kind::Builder(..) | Kind::EmptySet => true,
+            Kind::Big(Big::Union | Big::Intersection, ..) => true,
             Kind::Additive(first, rest) => {
                 rest.iter().any(|(op, _)| matches!(op, Additive::Union | Additive::Difference))
                     || self.is_set(first)
@@ -192,6 +193,52 @@ impl Checker<'_> {
             };
         }
         Some(Typed { node, form: Form::Set(roots), variable: None, span })
+    }
+
+    /// `⋃_{k ∈ K} V_k`: what is in one of the sets; `⋂`: in as many as there are.
+    pub(super) fn big_set(
+        &mut self,
+        big: Big,
+        clause: &Clause,
+        body: &Expression,
+        span: Span,
+    ) -> Option<Typed> {
+        let outer = self.locals.len();
+        let walked = self.members_of_each(clause, body);
+        self.locals.truncate(outer);
+        let (mut steps, slots, roots) = walked?;
+        let tuple: Vec<Node> = slots.into_iter().map(Node::Slot).collect();
+        if big == Big::Intersection {
+            let all = self.quantify(std::slice::from_ref(clause), &[body], false);
+            let set = self.set(body);
+            self.locals.truncate(outer);
+            let (all, (set, _)) = (all?, set?);
+            let mut holding = all.clone();
+            holding.push(Step::When(Node::Member(true, tuple.clone(), Box::new(set)), span));
+            let count = |steps: Vec<Step>| {
+                Box::new(Node::Over(
+                    Big::Sum,
+                    steps,
+                    Box::new(Node::Number(model::Number::ONE)),
+                    span,
+                ))
+            };
+            let every = Node::Compare(Relation::Equal, count(holding), count(all));
+            steps.push(Step::When(every, span));
+        }
+        let node = Node::Builder(steps, tuple, span);
+        Some(Typed { node, form: Form::Set(roots), variable: None, span })
+    }
+
+    fn members_of_each(
+        &mut self,
+        clause: &Clause,
+        body: &Expression,
+    ) -> Option<(Vec<Step>, Vec<Slot>, Vec<Root>)> {
+        let mut steps = self.quantify(std::slice::from_ref(clause), &[body], false)?;
+        let (more, slots, roots) = self.walk_set(body)?;
+        steps.extend(more);
+        Some((steps, slots, roots))
     }
 
     /// Steps that walk through a set expression, with the slots and roots of its places.

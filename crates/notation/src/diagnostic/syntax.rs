@@ -71,6 +71,15 @@ pub(crate) fn lower_limit(span: Span) -> Diagnostic {
     )
 }
 
+pub(crate) fn upper_limit(span: Span) -> Diagnostic {
+    Diagnostic::error(
+        "syntax.upper-limit",
+        span,
+        "the sum says where it begins and not where it ends",
+    )
+    .mend("put its last value behind it: ∑_{j=1}^{n}")
+}
+
 pub(crate) fn joined(span: Span) -> Diagnostic {
     Diagnostic::error(
         "syntax.joined",

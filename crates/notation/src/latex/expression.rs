@@ -275,6 +275,8 @@ fn big_sign(big: Big) -> &'static str {
         Big::Product => "\\prod",
         Big::Least => "\\min",
         Big::Greatest => "\\max",
+        Big::Union => "\\bigcup",
+        Big::Intersection => "\\bigcap",
     }
 }
 

@@ -1,6 +1,7 @@
 //! The lexer: text to tokens. It never fails; what it does not know becomes
 //! [`Kind::Unknown`], which the parser names in its message.
 
+mod braced;
 pub(crate) mod cases;
 mod foreign;
 mod macros;
@@ -39,6 +40,8 @@ fn lex_from(text: &str, from: Start, macros: Macros) -> (Vec<Token>, u32, Macros
         display: false,
         depth: from.depth,
         macros,
+        lefts: Vec::new(),
+        braced: None,
     };
     lexer.gap.add(Gap::NEWLINE);
     while lexer.at < text.len() {
@@ -46,6 +49,7 @@ fn lex_from(text: &str, from: Start, macros: Macros) -> (Vec<Token>, u32, Macros
         lexer.step();
         debug_assert!(lexer.at > before, "the lexer must move on");
     }
+    lexer.distribute();
     lexer.gap.add(Gap::NEWLINE);
     lexer.push(Kind::End, text.len(), text.len());
     settle_braces(&mut lexer.tokens);
@@ -66,6 +70,10 @@ struct Lexer<'t> {
     display: bool,
     depth: u32,
     macros: Macros,
+    /// For each open `\left`, where its content begins if it is an empty one: `\left.`.
+    lefts: Vec<Option<usize>>,
+    /// The rows between `\left.` and `\right\}`, whose quantifier follows.
+    braced: Option<(usize, usize)>,
 }
 
 impl Lexer<'_> {
@@ -305,7 +313,7 @@ impl Lexer<'_> {
     fn is_index_alone(&self, after: &str) -> bool {
         let raised = self.tokens.last().map(|t| t.kind);
         let raised = matches!(raised, Some(Kind::Underscore | Kind::Caret));
-        let follows = after.starts_with(['_', '^']);
+        let follows = after.starts_with('_');
         raised && self.gap == Gap::default() && (self.environment > 0 || follows)
     }
 
@@ -340,7 +348,7 @@ impl Lexer<'_> {
 
 /// The length of `s.t.` and its variants at the start of `rest`.
 fn such_that_short(rest: &str) -> Option<usize> {
-    let found = ["s.t.", "S.t.", "s. t.", "s.t"].iter().find(|s| rest.starts_with(**s))?;
+    let found = ["s.t.", "S.t.", "S.T.", "s. t.", "s.t"].iter().find(|s| rest.starts_with(**s))?;
     Some(found.len())
 }
 

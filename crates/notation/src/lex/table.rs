@@ -32,6 +32,8 @@ pub(super) fn sign(c: char) -> Option<Kind> {
         '∀' => Kind::ForAll,
         'Σ' | '∑' => Kind::Sum,
         '∏' | 'Π' => Kind::Product,
+        '⋃' => Kind::BigUnion,
+        '⋂' => Kind::BigIntersection,
         ':' | '∣' | '∶' => Kind::Colon,
         ',' => Kind::Comma,
         '.' => Kind::Period,
@@ -122,6 +124,8 @@ pub(super) fn command(name: &str) -> Option<Kind> {
     Some(match name {
         "sum" => Kind::Sum,
         "prod" => Kind::Product,
+        "bigcup" => Kind::BigUnion,
+        "bigcap" => Kind::BigIntersection,
         "forall" => Kind::ForAll,
         "in" => Kind::In,
         "notin" => Kind::NotIn,
@@ -203,6 +207,7 @@ pub(super) fn sets_last(name: &str) -> Option<u8> {
         "mathop" | "ensuremath" | "boxed" | "fbox" | "smash" | "mathclap" | "mathrlap"
         | "mathllap" | "displaylines" | "mathchoice" => 0,
         "textcolor" | "overset" | "colorbox" => 1,
+        "IEEEeqnarraymulticol" | "multicolumn" => 2,
         _ => return None,
     })
 }

@@ -33,6 +33,7 @@ impl Lexer<'_> {
     }
 
     fn line_break(&mut self) {
+        self.distribute();
         let start = self.at;
         let starred = usize::from(self.text[start + 2..].starts_with('*'));
         self.take(Kind::Break, 2 + starred);
@@ -88,15 +89,8 @@ impl Lexer<'_> {
             return self.gap.add(Gap::SPACE);
         }
         match name {
-            // an empty bracket: `\right.`
-            "left" | "right" => {
-                self.at += whole;
-                let rest = self.rest().trim_start();
-                if rest.starts_with('.') {
-                    self.at = self.text.len() - rest.len() + 1;
-                }
-                self.gap.add(Gap::SPACE);
-            }
+            "left" => self.left(whole),
+            "right" => self.right(whole),
             "hskip" | "kern" | "mkern" | "mskip" => {
                 self.at += whole + self.length_of_skip(start + whole);
                 self.gap.add(Gap::SPACE);
@@ -202,6 +196,7 @@ impl Lexer<'_> {
                 self.push_text(Kind::Break, start, self.at, "display".to_owned());
             }
             "end" => {
+                self.distribute();
                 self.environment = self.environment.saturating_sub(1);
                 self.push(Kind::Break, start, end);
             }

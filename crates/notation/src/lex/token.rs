@@ -41,6 +41,10 @@ pub(crate) enum Kind {
     ForAll,
     Sum,
     Product,
+    /// `⋃`
+    BigUnion,
+    /// `⋂`
+    BigIntersection,
     Colon,
     Comma,
     Period,
@@ -107,7 +111,7 @@ impl Gap {
     }
 
     /// The same without line breaks.
-    pub(super) fn without_lines(self) -> Self {
+    pub(crate) fn without_lines(self) -> Self {
         Self(self.0 & !(Self::NEWLINE.0 | Self::BLANK_LINE.0))
     }
 }

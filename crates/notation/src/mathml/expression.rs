@@ -194,6 +194,8 @@ impl<'t> Printer<'t> {
             Big::Product => ("∏", Tag::Operator),
             Big::Least => ("min", Tag::Identifier),
             Big::Greatest => ("max", Tag::Identifier),
+            Big::Union => ("⋃", Tag::Operator),
+            Big::Intersection => ("⋂", Tag::Operator),
         };
         let sign = Element::leaf(tag, sign);
         let limits = match (&under.items[..], under.such_that.is_empty()) {

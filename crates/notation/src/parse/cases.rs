@@ -4,7 +4,7 @@
 use super::{Parser, Read, Surroundings};
 use crate::lex::cases::MARK;
 use crate::lex::token::Kind as T;
-use crate::syntax::{Clause, Expression, Kind, Line};
+use crate::syntax::{Clause, Expression, Kind, Line, Name, children_mut};
 
 /// A value and its conditions; those of "otherwise" are that no other holds.
 pub(super) type Case = (Expression, Vec<Expression>);
@@ -18,14 +18,17 @@ impl Parser<'_> {
         self.place.splits && self.at_mark(T::LeftBrace)
     }
 
-    /// All cases; the first value stands for them until the statement is split.
+    /// All cases; a mark stands for them until the statement is split.
     pub(super) fn cases(&mut self) -> Read<Expression> {
+        let start = self.here();
         self.bump();
         let place = Surroundings { quad_ends: true, ..Surroundings::default() };
         let cases = self.within(place, |p| p.nested(Self::rows_of_cases))?;
-        let first = cases.first().map(|(value, _)| value.clone());
+        if !self.cases.is_empty() || cases.is_empty() {
+            return Err(self.expected("one bracket of cases"));
+        }
         self.cases = cases;
-        first.ok_or(()).map_err(|()| self.expected("a case"))
+        Ok(self.make(Kind::Name(mark()), start))
     }
 
     fn rows_of_cases(&mut self) -> Read<Vec<Case>> {
@@ -67,8 +70,9 @@ impl Parser<'_> {
         }
         let split = |(value, conditions): Case| {
             let mut line = line.clone();
-            if let Some((_, operand)) = line.links.last_mut() {
-                *operand = value;
+            let links = line.links.iter_mut().map(|(_, operand)| operand);
+            for operand in line.left.iter_mut().chain(links) {
+                put(operand, &value);
             }
             match line.clauses.last_mut() {
                 Some(clause) => clause.such_that.extend(conditions),
@@ -82,6 +86,20 @@ impl Parser<'_> {
         };
         std::mem::take(&mut self.cases).into_iter().map(split).collect()
     }
+}
+
+/// The name that stands for the cases; no text can hold it.
+fn mark() -> Name {
+    Name { text: "\u{0}".to_owned(), indices: Vec::new(), superscript: None }
+}
+
+/// Puts the value of a case where its mark stands.
+fn put(expression: &mut Expression, value: &Expression) {
+    if matches!(&expression.kind, Kind::Name(name) if *name == mark()) {
+        expression.kind = value.kind.clone();
+        return;
+    }
+    children_mut(&mut expression.kind).into_iter().for_each(|child| put(child, value));
 }
 
 /// Not all of the conditions.

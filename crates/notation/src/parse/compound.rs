@@ -24,7 +24,12 @@ impl Parser<'_> {
         }
         let Some((text, false, after)) = self.name_at(at) else { return false };
         let before = &self.tokens[self.first.max(at.saturating_sub(WINDOW))..at];
-        let seen = before.iter().any(|t| t.kind == T::Word && t.text == text);
+        // a name that has been seen with indices only is a variable, and no index
+        let bare = |(i, t): (usize, &crate::lex::token::Token)| {
+            let next = before.get(i + 1).map(|t| t.kind);
+            t.kind == T::Word && t.text == text && next != Some(T::Underscore)
+        };
+        let seen = before.iter().enumerate().any(bare);
         if seen || self.is_declared(text) || self.is_index(text, at) {
             return false;
         }

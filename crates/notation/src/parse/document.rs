@@ -99,6 +99,7 @@ impl Parser<'_> {
                 self.bump();
             } else if let Some(at) = self.objective_by_name(part) {
                 self.at = at;
+                part = self.part_word(Part::None).unwrap_or(part);
             } else {
                 if self.skip_lone_tag() {
                     continue;
@@ -129,7 +130,15 @@ impl Parser<'_> {
             before.kind == T::Break && !before.text.is_empty()
         };
         let open = part == Part::None || matches!(part, Part::Data | Part::Definitions) && display;
-        if open { self.named_objective() } else { None }
+        if open {
+            return self.named_objective();
+        }
+        // (P) min …, behind data
+        let named = self.peek() == T::LeftParen && self.tokens[self.at].gap.has(Gap::NEWLINE);
+        let close = if named { self.closing(self.at)? } else { return None };
+        let next = self.tokens.get(close + 1)?;
+        let sense = matches!(next.kind, T::Min | T::Max | T::Minimise | T::Maximise);
+        (sense && !next.gap.has(Gap::BLANK_LINE)).then_some(close + 1)
     }
 
     /// A line with a relation behind the objective is a constraint, "subject to" or not.
@@ -163,6 +172,9 @@ impl Parser<'_> {
             T::Definitions => Part::Definitions,
             T::Minimise | T::Min => Part::Objective { maximise: false, start },
             T::Maximise | T::Max => Part::Objective { maximise: true, start },
+            // "where N_i = …" behind the constraints
+            T::SuchThat if part == Part::Statements && self.at_where() => Part::Definitions,
+            T::Word if part == Part::Statements && self.at_where() => Part::Definitions,
             T::SubjectTo | T::SuchThat => Part::Statements,
             _ => return None,
         };
@@ -173,6 +185,19 @@ impl Parser<'_> {
         }
         self.eat(T::Colon);
         Some(part)
+    }
+
+    /// Whether `where` stands here at the start of a line, before a definition.
+    fn at_where(&self) -> bool {
+        let token = &self.tokens[self.at];
+        let lower = token.text.to_lowercase();
+        let begins =
+            token.gap.has(Gap::NEWLINE) || self.at > 0 && self.tokens[self.at - 1].kind == T::Break;
+        let Some(next) = self.tokens.get(self.at + 1) else { return false };
+        lower.trim_matches([',', ':', ' ']) == "where"
+            && begins
+            && next.kind == T::Word
+            && self.tokens[self.at..].iter().take(12).any(|t| t.kind == T::Equal)
     }
 
     fn line_of(&mut self, part: Part, tree: &mut Formulation) {
@@ -391,6 +416,6 @@ impl Parser<'_> {
             return word && !matches!(after, T::Underscore | T::Comma) && !after.is_relation();
         }
         let wide = wide && token.gap.has(Gap::WIDE) && !token.gap.has(Gap::NEWLINE);
-        wide && !token.kind.continues() && !self.tokens[i - 1].kind.continues()
+        wide && !token.kind.continues() && !self.goes_on(i - 1)
     }
 }

@@ -183,11 +183,15 @@ impl Parser<'_> {
         {
             return false;
         }
+        if self.place.quad_ends && self.at_wide_membership() {
+            return false;
+        }
         if self.at_number_word() || self.place.quad_ends && self.at_bracketed_clause() {
             return false;
         }
         match self.peek() {
             T::Bar => !self.place.bars && !self.place.bar_separates,
+            T::LeftBrace => self.at_group(),
             T::Word
             | T::Number
             | T::LeftParen

@@ -78,6 +78,22 @@ impl Parser<'_> {
             let sets = sets.iter().map(|set| vec![set.clone()]);
             return Ok(std::iter::once(before.to_vec()).chain(sets).map(line).collect());
         }
+        // s_0 = s_n = 0 is one domain line for each
+        let constant = |e: &Expression| matches!(e.kind, Kind::Number(_));
+        let operands = links[..links.len() - 1].iter().map(|(_, e)| e);
+        let equal = links.iter().all(|(relation, _)| *relation == Relation::Equal);
+        let one = matches!(&left[..], [one] if is_indexed(one));
+        if let Some((_, last)) = links.last().filter(|(_, last)| constant(last))
+            && links.len() > 1
+            && equal
+            && one
+            && operands.clone().all(is_indexed)
+        {
+            let each = left.iter().chain(operands);
+            let links = vec![(Relation::Equal, last.clone())];
+            let own = |e: &Expression| Line { left: vec![e.clone()], ..line(links.clone()) };
+            return Ok(each.map(own).collect());
+        }
         let line = line(links);
         Ok(self.split_by_cases(line))
     }
@@ -113,7 +129,7 @@ impl Parser<'_> {
         }
         let Some(relation) = relation(self.peek()) else { return Ok(None) };
         self.bump();
-        let operand = if self.at_cases() { self.cases()? } else { self.range()? };
+        let operand = self.range()?;
         self.zero_or_one(relation, operand).map(Some)
     }
 
@@ -172,6 +188,10 @@ impl Parser<'_> {
         self.end = open;
         Some(Label { text: inner.to_owned(), span })
     }
+}
+
+fn is_indexed(expression: &Expression) -> bool {
+    matches!(&expression.kind, Kind::Name(name) if !name.indices.is_empty())
 }
 
 /// Whether an operand must follow, so that what stands in brackets is one and no label. A sign

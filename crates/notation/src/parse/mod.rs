@@ -3,9 +3,11 @@
 
 mod cases;
 mod compound;
+mod copied;
 mod document;
 mod expression;
 mod line;
+mod literal;
 mod name;
 mod number;
 mod opening;
@@ -50,7 +52,7 @@ pub fn parse(text: &str) -> Parse {
     let (title, start) = document::title(text);
     let mut parser = Parser {
         text,
-        tokens: lex(text, start),
+        tokens: copied::settled(&lex(text, start)),
         at: 0,
         end: 0,
         depth: 0,
@@ -64,6 +66,7 @@ pub fn parse(text: &str) -> Parse {
     };
     let mut tree = parser.document();
     tree.title = title;
+    literal::joined(&mut tree);
     tree.complete = parser.diagnostics.is_empty();
     Parse { tree, diagnostics: tidy(parser.diagnostics) }
 }

@@ -24,7 +24,9 @@ impl Parser<'_> {
                     || token.gap.has(Gap::QUAD);
                 match token.kind {
                     T::Minimise | T::Maximise => return Some(i),
-                    T::Min | T::Max if ends && !opens => return Some(i),
+                    T::Min | T::Max if ends && (!opens || self.at_set_form(i + 1)) => {
+                        return Some(i);
+                    }
                     _ => {}
                 }
                 let relation = before.is_relation() || before == T::Comma;
@@ -81,6 +83,15 @@ impl Parser<'_> {
             }
         }
         None
+    }
+
+    /// Whether braces with a colon and another relation stand at a place.
+    fn at_set_form(&self, open: usize) -> bool {
+        let Some(close) = self.closing(open) else { return false };
+        let inner = &self.tokens[open..close];
+        self.tokens[open].kind == T::LeftBrace
+            && inner.iter().any(|t| matches!(t.kind, T::Colon | T::SuchThat | T::Bar))
+            && inner.iter().any(|t| t.kind.is_relation() && t.kind != T::In)
     }
 
     /// `max { Σ p x : Σ w x ≤ c, x ∈ {0,1} }` as an objective and its constraints: the braces

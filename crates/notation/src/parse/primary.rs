@@ -13,7 +13,6 @@ impl Parser<'_> {
             T::Number => self.number(),
             T::Word if !self.at_prime(0) => self.name(),
             T::LeftParen => self.parenthesis(),
-            T::LeftBrace => self.braces(),
             T::LeftBracket => self.interval(),
             T::Bar => self.bars(),
             T::LeftFloor => self.between(Function::Floor, T::RightFloor, "“⌋”"),
@@ -26,6 +25,10 @@ impl Parser<'_> {
             T::Max => self.big(Big::Greatest),
             T::Sum => self.big(Big::Sum),
             T::Product => self.big(Big::Product),
+            T::BigUnion => self.big(Big::Union),
+            T::BigIntersection => self.big(Big::Intersection),
+            T::LeftBrace if self.at_group() => self.group(),
+            T::LeftBrace if self.at_cases() => self.cases(),
             T::Fraction => self.fraction(),
             T::EmptySet => {
                 self.bump();
@@ -36,6 +39,7 @@ impl Parser<'_> {
                 Ok(self.make(Kind::Infinity, start))
             }
             T::Naturals | T::Integers | T::Reals | T::Binaries => self.number_set(),
+            T::LeftBrace => self.braces(),
             _ => Err(self.expected("an expression")),
         }
     }
@@ -59,6 +63,24 @@ impl Parser<'_> {
             1 => Expression { span: self.since(start), ..items.remove(0) },
             _ => self.make(Kind::Tuple(items), start),
         })
+    }
+
+    /// Whether a name in braces of TeX stands here, with what hangs on it: `{x}_{ij}`.
+    pub(super) fn at_group(&self) -> bool {
+        self.peek() == T::LeftBrace
+            && self.ahead(1) == T::Word
+            && self.ahead(2) == T::RightBrace
+            && matches!(self.ahead(3), T::Underscore | T::Caret)
+    }
+
+    fn group(&mut self) -> Read<Expression> {
+        let word = self.tokens[self.at + 1].clone();
+        self.at += 2;
+        // the name is read as if it stood where its group ends
+        let brace = std::mem::replace(&mut self.tokens[self.at], word);
+        let name = self.name();
+        debug_assert!(brace.kind == T::RightBrace, "it closes the group");
+        name
     }
 
     /// `{a, b}`, `{a..b}`, `{i ∈ V : cond}`.

@@ -19,7 +19,7 @@ impl Parser<'_> {
             }
             self.at += comma;
             let all = self.eat(T::ForAll);
-            let quad = self.gap().has(Gap::QUAD);
+            let quad = self.gap().has(Gap::QUAD) || self.at_wide_membership();
             let condition = self.peek() == T::SuchThat;
             let bracketed = self.at_bracketed_clause();
             let opens = comma == 1 || all || quad || condition || bracketed;
@@ -35,6 +35,30 @@ impl Parser<'_> {
                 self.expect(T::RightParen, "“)”")?;
             }
             debug_assert!(self.at > before, "a clause must move on");
+        }
+    }
+
+    /// Whether a membership stands here behind a relation, set apart by spaces alone:
+    /// `x_i ≥ 0      i ∈ I`, `i = 1,…,n`, `(i,j) ∈ A`.
+    pub(super) fn at_wide_membership(&self) -> bool {
+        if !self.place.splits || !self.gap().has(Gap::WIDE) {
+            return false;
+        }
+        let mut after = match self.peek() {
+            T::Word => 1,
+            T::LeftParen => match self.closing(self.at) {
+                Some(close) => close + 1 - self.at,
+                None => return false,
+            },
+            _ => return false,
+        };
+        while self.ahead(after) == T::Comma && self.ahead(after + 1) == T::Word {
+            after += 2;
+        }
+        match self.ahead(after) {
+            T::In => true,
+            T::Equal => (after + 1..after + 10).any(|k| self.ahead(k) == T::Dots),
+            _ => false,
         }
     }
 
@@ -205,6 +229,12 @@ impl Parser<'_> {
         let Some(mut clause) = lower else {
             return Err(self.expected("“_” and the index of the sum"));
         };
+        let first = clause.items.first().map(|item| &item.kind);
+        let counts = matches!(first, Some(Kind::Chain(_, links))
+            if matches!(links[..], [(Relation::Equal, _)]));
+        if plain && upper.is_none() && counts {
+            return Err(self.report(message::upper_limit(clause.span)));
+        }
         if let Some(upper) = upper {
             let begins = |item: &Expression| {
                 matches!(&item.kind, Kind::Chain(_, links)
@@ -238,13 +268,24 @@ impl Parser<'_> {
 
     /// One token as a whole group.
     fn single<V>(&mut self, rule: impl Fn(&mut Self) -> Read<V>) -> Read<V> {
+        if self.peek() == T::LeftParen {
+            let close = self.closing(self.at).filter(|close| *close < self.end);
+            let Some(close) = close else { return Err(self.expected("“)”")) };
+            return self.only(close + 1, rule);
+        }
         if !matches!(self.peek(), T::Word | T::Number) {
             return Err(self.expected("an index"));
         }
-        let end = std::mem::replace(&mut self.end, self.at + 1);
+        self.only(self.at + 1, rule)
+    }
+
+    /// What stands before a token, as a whole group.
+    fn only<V>(&mut self, end: usize, rule: impl Fn(&mut Self) -> Read<V>) -> Read<V> {
+        let outer = std::mem::replace(&mut self.end, end);
         let value = self.within(Surroundings::default(), |p| p.nested(&rule));
-        self.end = end;
-        value
+        let rest = self.at < self.end;
+        self.end = outer;
+        if rest { Err(self.expected("an operator")) } else { value }
     }
 }
 

@@ -3,8 +3,6 @@
 
 use std::cell::RefCell;
 
-use gloo_timers::callback::Timeout;
-use record::message::{CheckJob, CheckReport};
 use record::scenario::InstanceText;
 use report::number::of;
 use web_sys::{HtmlInputElement, HtmlTextAreaElement};
@@ -12,18 +10,16 @@ use yew::prelude::*;
 
 use crate::state::document::{DocumentAction, Slot};
 use crate::state::editor::{Draft, Edit};
-use crate::state::highlight::{Piece, pieces};
+use crate::state::highlight::Piece;
 use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
 use crate::state::typeset::row_at;
+use crate::view::checking::{Checked, Reading, use_checking};
 use crate::view::editor_box::{ScriptBox, select};
 use crate::view::editor_remarks::Remarks;
 use crate::view::guide::Guide;
 use crate::view::hands::{Hands, use_hands};
 use crate::view::typeset::Set;
-
-/// Rest after typing before the text is checked, in milliseconds.
-pub(crate) const REST: u32 = 150;
 
 #[derive(Properties, PartialEq)]
 pub(crate) struct EditorProps {
@@ -33,13 +29,6 @@ pub(crate) struct EditorProps {
     pub(crate) draft: Draft,
     pub(crate) instance: Option<Shared<InstanceText>>,
     pub(crate) open: bool,
-}
-
-/// A text with what was said of it.
-#[derive(Debug, Clone, PartialEq)]
-struct Checked {
-    text: String,
-    report: Shared<CheckReport>,
 }
 
 /// The button that opens the editor, and closes it with the text kept.
@@ -69,7 +58,6 @@ fn panel(id: LaneId) -> String {
 pub(crate) fn Editor(props: &EditorProps) -> Html {
     let hands = use_hands();
     let draft = use_state_eq(|| props.draft.clone());
-    let checked = use_state_eq(|| None::<Checked>);
     let area = use_node_ref();
     let (caret, held) = (use_state_eq(|| 0_u32), use_mut_ref(|| None::<usize>));
     // A shipped formulation is looked at before it is edited.
@@ -90,18 +78,11 @@ pub(crate) fn Editor(props: &EditorProps) -> Html {
     });
     let setter = draft.setter();
     use_effect_with(props.draft.clone(), move |running| setter.set(running.clone()));
-    let hear = checked.setter();
-    use_checking(props, draft.text.clone(), Callback::from(move |found| hear.set(Some(found))));
-    let (now, checked) = ((*draft).clone(), (*checked).clone());
-    let coloured = use_memo((now.text.clone(), checked.clone()), |(text, checked)| {
-        let old = checked.as_ref().map_or("", |checked| checked.text.as_str());
-        Shared::new(pieces(text, old, checked.as_ref().map(|checked| &*checked.report)))
-    });
+    let (id, instance) = (props.slot.id, props.instance.as_ref());
+    let Reading { checked, pieces, names } = use_checking(id, props.open, &draft.text, instance);
+    let now = (*draft).clone();
     let setter = draft.setter();
     let change = Callback::from(move |draft: Draft| setter.set(draft));
-    let names = use_memo(checked.clone(), |checked| {
-        Shared::new(checked.as_ref().map_or_else(Vec::new, |checked| checked.report.names()))
-    });
     if !props.open {
         return html! { <div id={panel(props.slot.id)} hidden=true /> };
     }
@@ -115,7 +96,7 @@ pub(crate) fn Editor(props: &EditorProps) -> Html {
             aria-label={format!("Notation of {}", props.letter)} data-testid="editor"
         >
             if *editing {
-                { written(props, &state, hands.as_ref(), Text { pieces: (*coloured).clone(), names: (*names).clone(), help, area, change, caret: caret.setter() }) }
+                { written(props, &state, hands.as_ref(), Text { pieces, names, help, area, change, caret: caret.setter() }) }
                 { set }
             } else {
                 { set }
@@ -209,28 +190,6 @@ fn set(
             active={*held.borrow()} {show}
         />
     }
-}
-
-/// Checks the text once typing rests.
-#[hook]
-fn use_checking(props: &EditorProps, text: String, heard: Callback<Checked>) {
-    let hands = use_hands();
-    let id = props.slot.id;
-    let open = props.open;
-    use_effect_with((open, text, props.instance.clone()), move |(open, text, instance)| {
-        let timer = open.then(|| {
-            let (text, instance) = (text.clone(), instance.as_deref().cloned());
-            Timeout::new(REST, move || {
-                let Some(hands) = hands else { return };
-                let job = CheckJob { text: text.clone(), instance, ..CheckJob::default() };
-                let hear = move |report| {
-                    heard.emit(Checked { text: text.clone(), report: Shared::new(report) });
-                };
-                hands.session.check(id, job, Callback::from(hear));
-            })
-        });
-        move || drop(timer)
-    });
 }
 
 /// What is typed, beside what runs.

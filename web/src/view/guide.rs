@@ -1,17 +1,15 @@
 //! Help on the notation, under the text that is written: one section at a time, each with an
 //! example that is read while it is changed.
 
-use gloo_timers::callback::Timeout;
-use record::message::{CheckJob, CheckReport, GuideSection};
+use record::message::GuideSection;
 use web_sys::HtmlTextAreaElement;
 use yew::prelude::*;
 
-use crate::state::highlight::pieces;
 use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
 use crate::state::typeset::row_at;
 use crate::state::words::{Span, spans};
-use crate::view::editor::REST;
+use crate::view::checking::{Checked, Reading, use_checking};
 use crate::view::editor_box::{ScriptBox, select};
 use crate::view::editor_remarks::Remarks;
 use crate::view::hands::use_hands;
@@ -70,29 +68,14 @@ struct LessonProps {
     section: GuideSection,
 }
 
-/// A text with what was said of it.
-#[derive(Debug, Clone, PartialEq)]
-struct Heard {
-    text: String,
-    report: Shared<CheckReport>,
-}
-
 /// What is to be known, and the example beside its mathematics.
 #[component]
 fn Lesson(props: &LessonProps) -> Html {
     let text = use_state_eq(|| props.section.example.clone());
-    let heard = use_state_eq(|| None::<Heard>);
     let caret = use_state_eq(|| 0_u32);
     let area = use_node_ref();
-    use_reading((*text).clone(), heard.setter());
-    let (changed, heard) = (**text != *props.section.example, (*heard).clone());
-    let coloured = use_memo(((*text).clone(), heard.clone()), |(text, heard)| {
-        let old = heard.as_ref().map_or("", |heard| heard.text.as_str());
-        Shared::new(pieces(text, old, heard.as_ref().map(|heard| &*heard.report)))
-    });
-    let names = use_memo(heard.clone(), |heard| {
-        Shared::new(heard.as_ref().map_or_else(Vec::new, |heard| heard.report.names()))
-    });
+    let Reading { checked: heard, pieces, names } = use_checking(NO_LANE, true, &text, None);
+    let changed = **text != *props.section.example;
     let typed = {
         let text = text.setter();
         Callback::from(move |typed| text.set(typed))
@@ -108,7 +91,7 @@ fn Lesson(props: &LessonProps) -> Html {
                 <div>
                     <ScriptBox
                         id={format!("{}-text", props.id)} label={format!("Example: {}", props.section.title)}
-                        text={(*text).clone()} pieces={(*coloured).clone()} names={(*names).clone()}
+                        text={(*text).clone()} {pieces} {names}
                         invalid={heard.as_ref().is_some_and(|heard| !heard.report.is_sound())}
                         described_by={format!("{}-remarks", props.id)} area={area.clone()}
                         typed={typed.clone()} enter={Callback::noop()}
@@ -130,7 +113,7 @@ fn Lesson(props: &LessonProps) -> Html {
     }
 }
 
-fn set(props: &LessonProps, heard: &Heard, caret: u32, area: &NodeRef) -> Html {
+fn set(props: &LessonProps, heard: &Checked, caret: u32, area: &NodeRef) -> Html {
     let area = area.clone();
     let show = Callback::from(move |place: (u32, u32)| {
         if let Some(area) = area.cast::<HtmlTextAreaElement>() {
@@ -143,24 +126,6 @@ fn set(props: &LessonProps, heard: &Heard, caret: u32, area: &NodeRef) -> Html {
             active={row_at(&heard.report.typeset.rows, &heard.text, caret)} {show}
         />
     }
-}
-
-/// Reads the example, and again once typing rests.
-#[hook]
-fn use_reading(text: String, heard: UseStateSetter<Option<Heard>>) {
-    let hands = use_hands();
-    use_effect_with(text, move |text| {
-        let text = text.clone();
-        let timer = Timeout::new(REST, move || {
-            let Some(hands) = hands else { return };
-            let job = CheckJob { text: text.clone(), ..CheckJob::default() };
-            let hear = move |report| {
-                heard.set(Some(Heard { text: text.clone(), report: Shared::new(report) }));
-            };
-            hands.session.check(NO_LANE, job, Callback::from(hear));
-        });
-        move || drop(timer)
-    });
 }
 
 fn said(span: Span<'_>) -> Html {

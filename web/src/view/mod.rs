@@ -7,6 +7,7 @@ pub(crate) mod axis;
 mod bars;
 mod bindings;
 pub(crate) mod canvas;
+mod checking;
 pub(crate) mod complaints;
 pub(crate) mod editor;
 pub(crate) mod editor_box;

@@ -2,7 +2,7 @@
 
 use std::collections::BTreeSet;
 
-use crate::check::{children, words};
+use crate::check::children;
 use crate::lex::lex;
 use crate::lex::token::Kind as Token;
 use crate::syntax::{Clause, Expression, Kind, Relation};
@@ -68,6 +68,9 @@ fn begins_remark(text: &str, last: bool) -> bool {
 /// Whether a condition behind a comma reads as a statement of its own: a relation over what has
 /// indices, or over a name that nothing before it in the list binds.
 fn begins_statement(item: &Expression, before: [&[Expression]; 2]) -> bool {
+    if let Kind::All(items) | Kind::Any(items) = &item.kind {
+        return items.first().is_some_and(|first| begins_statement(first, before));
+    }
     let Kind::Chain(first, links) = &item.kind else { return false };
     let relation = links.first().map(|(relation, _)| *relation);
     if matches!(relation, Some(Relation::In | Relation::Subset | Relation::SubsetOrEqual)) {
@@ -79,8 +82,18 @@ fn begins_statement(item: &Expression, before: [&[Expression]; 2]) -> bool {
     let assigns = matches!(relation, Some(Relation::Equal | Relation::AtMost | Relation::AtLeast));
     let Kind::Name(name) = &first.kind else { return false };
     let mut bound = BTreeSet::new();
-    before.into_iter().flatten().for_each(|one| words(one, &mut bound));
+    before.into_iter().flatten().for_each(|one| bare_names(one, &mut bound));
     assigns && !bound.contains(name.text.as_str())
+}
+
+/// The names that stand without indices.
+fn bare_names<'e>(expression: &'e Expression, found: &mut BTreeSet<&'e str>) {
+    if let Kind::Name(name) = &expression.kind
+        && name.indices.is_empty()
+    {
+        found.insert(&name.text);
+    }
+    children(expression).into_iter().for_each(|child| bare_names(child, found));
 }
 
 fn has_indices(expression: &Expression) -> bool {

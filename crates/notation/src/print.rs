@@ -19,15 +19,13 @@ use crate::syntax::{
 pub fn print(tree: &Formulation) -> String {
     let mut out = String::new();
     if let Some(title) = &tree.title {
-        // behind a backslash, a sign that begins a comment does not
-        let escape = if title.starts_with(['#', '%']) { "\\" } else { "" };
-        let _ = write!(out, "{escape}{title}\n\n");
+        let _ = write!(out, "{}\n\n", no_comment(title));
     }
     part(&mut out, "data", &tree.data);
     part(&mut out, "definitions", &tree.definitions);
     if let Some(objective) = &tree.objective {
         let sense = if objective.maximise { "maximise" } else { "minimise" };
-        let _ = writeln!(out, "{sense}\n  {}", at(&objective.expression, RANGE));
+        let _ = writeln!(out, "{sense}\n  {}", no_part(at(&objective.expression, RANGE)));
     }
     part(&mut out, "subject to", &tree.statements);
     out
@@ -40,10 +38,7 @@ fn part(out: &mut String, word: &str, lines: &[Line]) {
     let _ = writeln!(out, "{word}");
     for (i, one) in lines.iter().enumerate() {
         let place = if word == "subject to" { Place::Statement } else { Place::Described };
-        let mut printed = line(one, place, word == "data");
-        if let Some(length) = opens_part(&printed) {
-            printed = format!("\\mathit{{{}}}{}", &printed[..length], &printed[length..]);
-        }
+        let printed = no_part(line(one, place, word == "data"));
         // a line that begins with an operator would go on with the one before
         if i > 0 && printed.starts_with(['−', '¬']) {
             out.push('\n');
@@ -52,11 +47,21 @@ fn part(out: &mut String, word: &str, lines: &[Line]) {
     }
 }
 
-/// The length of a name at the start of a line that would there open a part.
-fn opens_part(printed: &str) -> Option<usize> {
-    let tokens = lex(printed, 0);
-    let first = tokens.first()?;
-    matches!(first.kind, Token::Data | Token::Definitions).then_some(first.span.end as usize)
+/// A title that begins with the sign of a comment stands behind a backslash.
+pub(crate) fn no_comment(title: &str) -> String {
+    if title.starts_with(['#', '%']) { format!("\\{title}") } else { title.to_owned() }
+}
+
+/// A line whose first name would open a part, with that name as TeX sets it.
+fn no_part(printed: String) -> String {
+    let tokens = lex(&printed, 0);
+    match tokens.first() {
+        Some(first) if matches!(first.kind, Token::Data | Token::Definitions) => {
+            let (word, rest) = printed.split_at(first.span.end as usize);
+            format!("\\mathit{{{word}}}{rest}")
+        }
+        _ => printed,
+    }
 }
 
 /// One line with its quantifier, label and remark; `wide` says that two spaces begin a remark.
@@ -73,15 +78,19 @@ fn line(line: &Line, place: Place, wide: bool) -> String {
         let _ = write!(out, "  \\tag{{{}}}", label.text);
     }
     if let Some(remark) = &line.remark {
-        out.push_str(&remark_text(remark, wide));
+        let printed = remark_text(&out, remark, wide);
+        out.push_str(&printed);
     }
     out
 }
 
 /// A remark in a spelling that reads back as one.
-fn remark_text(remark: &str, wide: bool) -> String {
+fn remark_text(before: &str, remark: &str, wide: bool) -> String {
     let word = lex(remark, 0).first().is_some_and(|t| t.kind == Token::Word && t.span.start == 0);
-    let plain = wide && word && !remark.contains(['#', '%', '\\', '$', '\'']);
+    let plain = wide
+        && word
+        && !is_word_pair(before, remark)
+        && !remark.contains(['#', '%', '\\', '$', '\'']);
     if plain { format!("  {remark}") } else { format!("  {}", crate::latex::remark(remark)) }
 }
 

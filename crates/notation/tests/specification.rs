@@ -195,6 +195,7 @@ fn part_words_and_titles() {
 }
 
 #[test]
+#[expect(clippy::too_many_lines, reason = "a table, a sentence a line")]
 fn statements() {
     let plain = "¦ z_i ≥ 1  ∀ i ∈ V  (fam)";
     let two = "¦ z_i ≥ 1 ∀ i ∈ V (fam); z_i ≤ 9 ∀ i ∈ V (other)";
@@ -332,6 +333,7 @@ fn variables() {
 }
 
 #[test]
+#[expect(clippy::too_many_lines, reason = "a table, a sentence a line")]
 fn expressions() {
     all(&[
         ("∪ and listed sets", "r ∈ V ¦ z_i ≥ 1 ∀ i ∈ {r} ∪ {r} (fam)", Rows(1, "z[Ash] ≥ 1")),

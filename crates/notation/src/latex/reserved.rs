@@ -69,7 +69,11 @@ pub(crate) fn read_verbatim(mut text: &str) -> String {
 /// A title; raw where its escaped form would not be read back.
 pub(super) fn escaped(title: &str) -> String {
     let out = escaped_text(title);
-    if crate::parse::is_title(&out) && unescaped(&out) == title { out } else { title.to_owned() }
+    if crate::parse::is_title(&out) && unescaped(&out) == title {
+        out
+    } else {
+        crate::print::no_comment(title)
+    }
 }
 
 /// The text without backslashes before reserved characters.

@@ -11,7 +11,12 @@ impl Lexer<'_> {
     pub(super) fn cases(&mut self, name: &str, start: usize) {
         let text = self.text;
         let closing = format!("\\end{{{name}}}");
-        let Some(length) = text[self.at..].find(&closing) else {
+        let known = self.endless.iter().any(|one| one == name);
+        let found = if known { None } else { text[self.at..].find(&closing) };
+        let Some(length) = found else {
+            if !known {
+                self.endless.push(name.to_owned());
+            }
             return self.push(Kind::Unknown, start, self.at);
         };
         let (from, to) = (self.at, self.at + length);

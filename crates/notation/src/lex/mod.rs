@@ -10,6 +10,8 @@ mod table;
 mod tex;
 pub(crate) mod token;
 
+use std::cell::OnceCell;
+
 use crate::place::Span;
 use macros::Macros;
 pub(crate) use table::letter_command;
@@ -40,6 +42,8 @@ fn lex_from(text: &str, from: Start, macros: Macros) -> (Vec<Token>, u32, Macros
         display: false,
         depth: from.depth,
         macros,
+        closers: OnceCell::new(),
+        endless: Vec::new(),
         lefts: Vec::new(),
         braced: None,
     };
@@ -70,6 +74,10 @@ struct Lexer<'t> {
     display: bool,
     depth: u32,
     macros: Macros,
+    /// Each brace with the one that closes it, found when they are first asked for.
+    closers: OnceCell<Vec<(usize, usize)>>,
+    /// Environments of cases that do not end behind here.
+    endless: Vec<String>,
     /// For each open `\left`, where its content begins if it is an empty one: `\left.`.
     lefts: Vec<Option<usize>>,
     /// The rows between `\left.` and `\right\}`, whose quantifier follows.
@@ -369,13 +377,18 @@ fn pair(word: &str, rest: &str) -> Option<(Kind, usize)> {
     let lower = word.to_lowercase();
     let after = &rest[word.len()..];
     let spaces = after.len() - after.trim_start_matches([' ', '\t', '~']).len();
+    if spaces == 0 {
+        return None;
+    }
     let next = &after[spaces..];
     let belongs = |c: char| c.is_alphanumeric() && table::sign(c).is_none();
-    let end = next.find(|c: char| !belongs(c)).unwrap_or(next.len());
+    // no second word is longer
+    let end = next.char_indices().take(8).find(|(_, c)| !belongs(*c));
+    let end = end.or_else(|| next.char_indices().nth(8)).map_or(next.len(), |(at, _)| at);
     let next = &next[..end];
     let &(_, second, kind) =
         table::WORD_PAIRS.iter().find(|(a, b, _)| *a == lower && *b == next)?;
-    (spaces > 0).then(|| (kind, word.len() + spaces + second.len()))
+    Some((kind, word.len() + spaces + second.len()))
 }
 
 /// `V\{r}` is `V ∖ {r}`: a TeX brace that a plain one closes was a set difference.

@@ -266,22 +266,8 @@ impl Lexer<'_> {
         let rest = &text[at..];
         let first = rest.chars().next()?;
         if first == '{' {
-            let mut depth = 0_u32;
-            let mut escaped = false;
-            for (i, b) in rest.bytes().enumerate().take(20_000) {
-                let literal = escaped;
-                escaped = b == b'\\' && !literal;
-                match b {
-                    _ if literal => {}
-                    b'{' => depth += 1,
-                    b'}' => depth -= 1,
-                    _ => {}
-                }
-                if depth == 0 {
-                    return Some((at + 1..at + i, at + i + 1));
-                }
-            }
-            return None;
+            let close = self.closer(at).filter(|close| close - at < 20_000)?;
+            return Some((at + 1..close, close + 1));
         }
         if first == '\\' {
             let letters =
@@ -289,6 +275,28 @@ impl Lexer<'_> {
             return (letters > 0).then(|| (at..at + 1 + letters, at + 1 + letters));
         }
         first.is_alphanumeric().then(|| (at..at + first.len_utf8(), at + first.len_utf8()))
+    }
+
+    /// Where a brace is closed. O(text) once, then O(log braces).
+    fn closer(&self, open: usize) -> Option<usize> {
+        let closers = self.closers.get_or_init(|| {
+            let (mut open, mut found) = (Vec::new(), Vec::new());
+            let mut escaped = false;
+            for (at, byte) in self.text.bytes().enumerate() {
+                let literal = escaped;
+                escaped = byte == b'\\' && !literal;
+                match byte {
+                    _ if literal => {}
+                    b'{' => open.push(at),
+                    b'}' => found.extend(open.pop().map(|from| (from, at))),
+                    _ => {}
+                }
+            }
+            found.sort_unstable();
+            found
+        });
+        let at = closers.binary_search_by_key(&open, |(from, _)| *from).ok()?;
+        closers.get(at).map(|(_, to)| *to)
     }
 
     /// Whether the next token is an index or a power, alone or first in its group.

@@ -236,6 +236,10 @@ fn indices(tokens: &[Token], start: usize) -> BTreeSet<char> {
         let (Some(letter), None, T::Word) = (chars.next(), chars.next(), token.kind) else {
             continue;
         };
+        // x ∈ X on a line of its own is a domain
+        if token.gap.has(Gap::NEWLINE) || kind(i.wrapping_sub(1)) == T::Break {
+            continue;
+        }
         let limit =
             kind(i.wrapping_sub(1)) == T::LeftBrace && kind(i.wrapping_sub(2)) == T::Underscore;
         let quantified = kind(i.wrapping_sub(1)) == T::ForAll;

@@ -217,7 +217,8 @@ impl Parser<'_> {
             tree.unread_lines.push(Unread { section: part.section(), span });
         }
         match part {
-            Part::Data => tree.ends.data = Some(span),
+            // a line that only names the model is none
+            Part::Data if read.is_none() || !tree.data.is_empty() => tree.ends.data = Some(span),
             Part::Statements => tree.ends.statements = Some(span),
             _ => {}
         }

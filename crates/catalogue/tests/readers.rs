@@ -29,6 +29,10 @@ const FILES: &[(&str, &[&str])] = &[
     ("vrp/P-n16-k8.vrp", &["cvrp"]),
 ];
 
+/// Rivals whose columns an instance must list (bundles of jobs, stable sets, rounds): no library's
+/// file does.
+const LISTED: [&str; 3] = ["gap/patterns", "colouring/stable-sets", "cvrp/routes"];
+
 /// Formats of which the folder holds no small file: invented numbers.
 const TEXTS: &[(&str, &str)] = &[
     ("knapsack", "3 6\n5 4\n4 3\n3 2\n"),
@@ -39,7 +43,8 @@ fn without_a_hand(text: &str, family: &str) -> String {
     let reading = instance::read(text, None);
     let Some(instance) = reading.instance else { return format!("{:?}", reading.complaints) };
     let mut wrong = String::new();
-    for rival in entries().into_iter().filter(|entry| entry.family == family) {
+    let rivals = entries().into_iter().filter(|entry| entry.family == family);
+    for rival in rivals.filter(|rival| !LISTED.contains(&rival.id.as_str())) {
         let (checked, _) = check(&parse(rival.text).tree);
         let (names, _) = assumed(rival.text, &checked, &instance, &BTreeMap::new());
         if let Err(found) = bind(&checked, &instance, &names) {

@@ -9,6 +9,8 @@ pub(crate) enum Topic {
     Write,
     List,
     Digest,
+    Cells,
+    Gather,
 }
 
 impl Topic {
@@ -20,6 +22,8 @@ impl Topic {
             "write" => Self::Write,
             "list" => Self::List,
             "digest" => Self::Digest,
+            "cells" => Self::Cells,
+            "gather" => Self::Gather,
             _ => return None,
         })
     }
@@ -34,6 +38,8 @@ pub(crate) fn text(topic: Topic) -> &'static str {
         Topic::Write => WRITE,
         Topic::List => LIST,
         Topic::Digest => DIGEST,
+        Topic::Cells => CELLS,
+        Topic::Gather => GATHER,
     }
 }
 
@@ -45,6 +51,8 @@ hullward: rival integer formulations side by side on your own data.
   hullward write FILE     a rival as MPS, LaTeX or notation, or the scenario
   hullward list [ID]      the shipped formulations, or the text of one
   hullward digest FILE    one line a rival that two machines can compare
+  hullward cells FILE     the numbered cells of a growth study, for a batch queue
+  hullward gather RESULT… what its cells gave, summed up as one study
   hullward help [CALL]    more on one of them
   hullward help CODE      what the code of a complaint means, with an example
   hullward --version      the version of the engine
@@ -57,17 +65,20 @@ check failed.
 ";
 
 const RUN: &str = "\
-hullward run FILE… [--json] [--seconds S] [--rival LETTER] [--log FILE]
+hullward run FILE… [--json] [--seconds S] [--rival LETTER] [--log FILE] [--cell N]
 
-Runs every rival of the scenarios, one after another, and prints a table.
+Runs every rival of the scenarios, one after another, then their studies, and
+prints tables.
 
-  --json          one JSON object a rival and line instead; times stand in an
+  --json          one JSON object a rival or study and line instead; times stand in an
                   object of their own, so that results compare without them
   --seconds S     stop each rival after S seconds (0: never) instead of what the
                   scenario says; the clock never changes what is found
   --rival LETTER  run only this rival
   --log FILE      save the log of its search; the scenario must have one rival, or
                   --rival must name it
+
+  --cell N        only cell N of its growth study, as JSON for hullward gather
 
 A rival that cannot be run does not keep the others from running.
 The bound is always in the direction of the objective. A gap is
@@ -121,4 +132,27 @@ scenario's limits of nodes and iterations.
   --slice TICKS   non-zeros touched a slice (2000000 unless given)
   --runs N        run each so often, once more to begin with, and put the shortest
                   time in milliseconds behind its digest
+";
+
+const CELLS: &str = "\
+hullward cells FILE
+
+Lists the cells of a scenario's growth study, one number and what it runs a line. Each
+cell is a run of its own, so that any batch queue can make them, in any order:
+
+  seq 0 $(($(hullward cells study.toml | wc -l) - 1)) |
+    parallel 'hullward run --cell {} study.toml > cell-{}.json'
+  hullward gather cell-*.json
+
+or, as an array job of Slurm, with the header
+
+  #SBATCH --array=0-59
+  hullward run --cell $SLURM_ARRAY_TASK_ID study.toml > cell-$SLURM_ARRAY_TASK_ID.json
+";
+
+const GATHER: &str = "\
+hullward gather RESULT… [--json]
+
+Takes what hullward run --cell gave and sums it up: the same study, byte for byte, as
+hullward run makes of the whole scenario. Cells that are missing are named.
 ";

@@ -3,6 +3,7 @@
 //! Results go to standard output, everything else to standard error. The exit status says how
 //! it went (see [`ending::Ending`]).
 
+mod cells;
 mod clock;
 mod complain;
 mod digest;
@@ -57,5 +58,7 @@ fn carry_out(call: &Call, out: &mut dyn Write, err: &mut dyn Write) -> std::io::
         Call::Write(options) => write::write(options, out, err),
         Call::List(id) => list::list(id.as_deref(), out, err),
         Call::Digest(options) => digest::digest(options, out, err),
+        Call::Cells(file) => cells::list(file, out, err),
+        Call::Gather(options) => cells::gather(options, out, err),
     }
 }

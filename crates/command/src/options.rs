@@ -16,6 +16,15 @@ pub(crate) enum Call {
     Write(WriteOptions),
     List(Option<String>),
     Digest(DigestOptions),
+    Cells(String),
+    Gather(GatherOptions),
+}
+
+/// How `gather` is asked for.
+#[derive(Debug, Clone, Default, PartialEq, Eq)]
+pub(crate) struct GatherOptions {
+    pub(crate) files: Vec<String>,
+    pub(crate) json: bool,
 }
 
 /// How `run` is asked for.
@@ -29,6 +38,8 @@ pub(crate) struct RunOptions {
     pub(crate) rival: Option<String>,
     /// Where the log is saved.
     pub(crate) log: Option<String>,
+    /// The only cell of its growth study to run.
+    pub(crate) cell: Option<u32>,
 }
 
 /// How `digest` is asked for.
@@ -96,7 +107,7 @@ impl Form {
     }
 }
 
-const CALLS: [&str; 6] = ["run", "read", "write", "list", "digest", "help"];
+const CALLS: [&str; 8] = ["run", "read", "write", "list", "digest", "cells", "gather", "help"];
 
 /// The call, or what is wrong with the words.
 pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
@@ -115,6 +126,8 @@ pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
         "write" => write(rest).map(Call::Write),
         "list" => list(rest),
         "digest" => digest(rest),
+        "cells" => one(rest, "cells").map(Call::Cells),
+        "gather" => gather(rest).map(Call::Gather),
         other => Err(unknown("call", other, &CALLS)),
     }
 }
@@ -145,8 +158,9 @@ fn run(words: &[String]) -> Result<RunOptions, String> {
             "--seconds" => options.seconds = Some(seconds(value(word, words.next())?)?),
             "--rival" => options.rival = Some(value(word, words.next())?.to_uppercase()),
             "--log" => options.log = Some(value(word, words.next())?.to_owned()),
+            "--cell" => options.cell = Some(cell(value(word, words.next())?)?),
             other if is_option(other) => {
-                let known = ["--json", "--seconds", "--rival", "--log"];
+                let known = ["--json", "--seconds", "--rival", "--log", "--cell"];
                 return Err(unknown("option", other, &known));
             }
             file => options.files.push(file.to_owned()),
@@ -181,6 +195,25 @@ fn write(words: &[String]) -> Result<WriteOptions, String> {
         return Err(format!("write needs --as and one of {known}"));
     };
     Ok(WriteOptions { file, rival, instance, form, out })
+}
+
+fn gather(words: &[String]) -> Result<GatherOptions, String> {
+    let mut options = GatherOptions::default();
+    for word in words {
+        match word.as_str() {
+            "--json" => options.json = true,
+            other if is_option(other) => return Err(unknown("option", other, &["--json"])),
+            file => options.files.push(file.to_owned()),
+        }
+    }
+    if options.files.is_empty() {
+        return Err("gather needs what the cells gave: hullward gather RESULT…".to_owned());
+    }
+    Ok(options)
+}
+
+fn cell(word: &str) -> Result<u32, String> {
+    word.parse().map_err(|_| format!("--cell needs the number of a cell, not {word}"))
 }
 
 fn place(word: &str) -> Result<usize, String> {

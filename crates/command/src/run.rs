@@ -10,6 +10,7 @@ use record::results::{RivalResult, Status, Timing};
 use record::scenario::{Scenario, Study, letter};
 use record::study::Report;
 
+use crate::cells;
 use crate::clock::Clock;
 use crate::complain::complain;
 use crate::ending::Ending;
@@ -59,6 +60,9 @@ impl Job<'_> {
                 return Ok(Ending::Wrong);
             }
         };
+        if let Some(cell) = self.options.cell {
+            return cells::run(&self.source.name, &scenario, cell, (out, err));
+        }
         let mut ending = Ending::Done;
         let mut results = Vec::new();
         for instance in 0..scenario.instances().count().max(1) {

@@ -39,7 +39,7 @@ pub use handover::{HandOver, Refusal, latex, mps, notation_text};
 pub use left_out::left_out;
 pub use load::{describe, prepare};
 pub use mps::{looks_like_mps, mps_report};
-pub use studies::{KINDS, StudyRun};
+pub use studies::{KINDS, StudyRun, cells, gathered};
 pub use worker::Worker;
 
 /// The version of the engine: it stands in saved logs, and beside saved results.

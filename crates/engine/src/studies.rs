@@ -12,8 +12,8 @@ use crate::load::{Loaded, formulation, load, states};
 use crate::readings::Readings;
 
 /// The kinds of study there are.
-pub const KINDS: [&str; 6] =
-    ["ladder", "families", "equivalence", "order", "tightening", "numerics"];
+pub const KINDS: [&str; 7] =
+    ["ladder", "families", "equivalence", "order", "tightening", "numerics", "growth"];
 
 /// A study on its way.
 #[derive(Debug)]
@@ -26,12 +26,22 @@ impl StudyRun {
     /// left out; why is said with their own results.
     #[must_use]
     pub fn new(scenario: &Scenario, instance: usize, study: &Study) -> Self {
+        Self::some(scenario, instance, study, None)
+    }
+
+    /// One cell of a growth study, by number from 0: its runs alone, nothing summed up.
+    #[must_use]
+    pub fn cell(scenario: &Scenario, instance: usize, study: &Study, cell: u32) -> Self {
+        Self::some(scenario, instance, study, Some(cell))
+    }
+
+    fn some(scenario: &Scenario, instance: usize, study: &Study, cell: Option<u32>) -> Self {
         let plan = plan(scenario, study);
         let subjects = subjects(scenario, instance);
         let running = match plan {
             Err(why) => left(study, why),
             Ok(_) if subjects.is_empty() => left(study, "no rival could be run".to_owned()),
-            Ok(plan) => begun(study, subjects, plan),
+            Ok(plan) => begun(study, subjects, plan, cell),
         };
         Self { running }
     }
@@ -64,7 +74,12 @@ fn left(study: &Study, why: String) -> Running<Vec<Report>> {
     Running::new(|_| async { vec![report] })
 }
 
-fn begun(study: &Study, subjects: Vec<Subject>, plan: Plan) -> Running<Vec<Report>> {
+fn begun(
+    study: &Study,
+    subjects: Vec<Subject>,
+    plan: Plan,
+    cell: Option<u32>,
+) -> Running<Vec<Report>> {
     let kind = study.kind.clone();
     Running::new(|desk| async move {
         match kind.as_str() {
@@ -78,6 +93,10 @@ fn begun(study: &Study, subjects: Vec<Subject>, plan: Plan) -> Running<Vec<Repor
             "numerics" => {
                 vec![Report::Numerics(study::numerics::numerics(desk, subjects, plan).await)]
             }
+            "growth" => {
+                let growth = study::growth::growth(desk, subjects, plan, cell).await;
+                vec![Report::Growth(Box::new(growth))]
+            }
             "order" => {
                 let orders = study::order::order(desk, subjects, plan).await;
                 orders.into_iter().map(Report::Order).collect()
@@ -89,6 +108,25 @@ fn begun(study: &Study, subjects: Vec<Subject>, plan: Plan) -> Running<Vec<Repor
             _ => vec![Report::Left { why: unknown(&kind), kind }],
         }
     })
+}
+
+/// How many cells the growth studies of a scenario have on one of its instances, each with its place
+/// among the scenario's studies.
+///
+/// # Errors
+/// A field that a study does not have.
+pub fn cells(scenario: &Scenario, instance: usize) -> Result<Vec<(usize, u32)>, String> {
+    let subjects = subjects(scenario, instance);
+    let growth = scenario.studies.iter().enumerate().filter(|(_, study)| study.kind == "growth");
+    growth
+        .map(|(place, study)| Ok((place, study::growth::cells(&subjects, &plan(scenario, study)?))))
+        .collect()
+}
+
+/// A growth study from all of its cells, however they were made.
+#[must_use]
+pub fn gathered(growth: record::study::Growth) -> record::study::Growth {
+    study::growth::summed_up(growth)
 }
 
 fn unknown(kind: &str) -> String {
@@ -147,11 +185,18 @@ fn plan(scenario: &Scenario, study: &Study) -> Result<Plan, String> {
             "duels" => plan.duels = whole(name, field)?,
             "plans" => plan.plans = whole(name, field)?,
             "rows" => plan.rows = whole(name, field)?,
-            "sizes" => plan.sizes = list(name, field, whole)?,
+            "sizes" => {
+                plan.sizes = list(name, field, whole)?;
+                plan.growth.sizes.clone_from(&plan.sizes);
+            }
+            "seeds" => plan.growth.seeds = list(name, field, seed)?,
+            "classes" => plan.growth.classes = list(name, field, class)?,
+            "production" => plan.growth.production = Some(whole(name, field)?),
             "shared" => plan.shared = list(name, field, text)?,
             "mutants" => plan.mutants = flag(name, field)?,
             _ => {
-                let known = "nodes, seed, duels, plans, rows, sizes, shared, mutants";
+                let known = "nodes, seed, duels, plans, rows, sizes, seeds, classes, production, \
+                             shared, mutants";
                 return Err(format!("the study has no \"{name}\"; there are {known}"));
             }
         }
@@ -166,6 +211,18 @@ fn whole(name: &str, field: &Field) -> Result<u32, String> {
         }
         _ => Err(format!("\"{name}\" must be a whole number")),
     }
+}
+
+fn seed(name: &str, field: &Field) -> Result<u64, String> {
+    whole(name, field).map(u64::from)
+}
+
+fn class(name: &str, field: &Field) -> Result<catalogue::Class, String> {
+    let text = text(name, field)?;
+    catalogue::Class::from_name(&text).ok_or_else(|| {
+        let known = catalogue::Class::ALL.map(catalogue::Class::name).join(", ");
+        format!("there is no class \"{text}\" of data; there are {known}")
+    })
 }
 
 fn text(name: &str, field: &Field) -> Result<String, String> {

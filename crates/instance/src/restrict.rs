@@ -11,7 +11,13 @@ impl Instance {
     /// in the order in which they come. Numbers stay as they are.
     #[must_use]
     pub fn first(&self, count: usize) -> Self {
-        let kept = Kept::of(self, count);
+        self.part(count, None)
+    }
+
+    /// As [`Self::first`], of elements that a seed chooses; they keep their order.
+    #[must_use]
+    pub fn part(&self, count: usize, seed: Option<u64>) -> Self {
+        let kept = Kept::of(self, count, seed);
         let mut part = self.clone();
         for (_, datum) in &mut part.data {
             kept.restrict(datum);
@@ -37,7 +43,7 @@ impl Instance {
 struct Kept(BTreeSet<String>);
 
 impl Kept {
-    fn of(instance: &Instance, count: usize) -> Self {
+    fn of(instance: &Instance, count: usize, seed: Option<u64>) -> Self {
         let sets = sets(instance);
         let mut kept = BTreeSet::new();
         for (place, set) in sets.iter().enumerate() {
@@ -47,7 +53,7 @@ impl Kept {
                 larger && set.iter().all(|label| sets[other].contains(label))
             };
             if !(0..sets.len()).any(|other| other != place && within(other)) {
-                kept.extend(set.iter().take(count).cloned());
+                kept.extend(chosen(set, count, seed));
             }
         }
         for (_, datum) in instance.data() {
@@ -75,6 +81,25 @@ impl Kept {
             Datum::Number(_) | Datum::Element(_) => {}
         }
     }
+}
+
+/// The first elements of a set, or as many that a seed chooses.
+fn chosen(set: &[String], count: usize, seed: Option<u64>) -> Vec<String> {
+    let Some(seed) = seed else { return set.iter().take(count).cloned().collect() };
+    let mut places: Vec<(u64, usize)> =
+        (0..set.len()).map(|place| (mixed(seed, place as u64), place)).collect();
+    places.sort_unstable();
+    places.truncate(count);
+    places.into_iter().map(|(_, place)| set[place].clone()).collect()
+}
+
+/// A number that looks random, of a seed and a place (the mixer of SplitMix64: Steele, Lea, Flood
+/// 2014).
+fn mixed(seed: u64, place: u64) -> u64 {
+    let mut z = seed.wrapping_add(place.wrapping_add(1).wrapping_mul(0x9e37_79b9_7f4a_7c15));
+    z = (z ^ (z >> 30)).wrapping_mul(0xbf58_476d_1ce4_e5b9);
+    z = (z ^ (z >> 27)).wrapping_mul(0x94d0_49bb_1331_11eb);
+    z ^ (z >> 31)
 }
 
 /// The sets of an instance, and last the labels that stand in tuples and in no set.
@@ -128,6 +153,14 @@ mod tests {
         last.set("r", Datum::Element("D".to_owned()));
         part = last.first(2);
         assert_eq!(part.stops(), ["A", "B", "D"]);
+        // A seed chooses others, always the same, in their order.
+        let seeded: Vec<Vec<String>> =
+            (0..20).map(|seed| instance.part(3, Some(seed)).stops().to_vec()).collect();
+        let again: Vec<Vec<String>> =
+            (0..20).map(|seed| instance.part(3, Some(seed)).stops().to_vec()).collect();
+        assert_eq!(seeded, again);
+        assert!(seeded.iter().all(|stops| stops.len() >= 3 && stops.is_sorted()), "{seeded:?}");
+        assert!(seeded.iter().any(|stops| *stops != seeded[0]), "{seeded:?}");
     }
 
     #[test]

@@ -3,6 +3,7 @@
 
 mod equivalence;
 mod families;
+mod growth;
 mod ladder;
 mod numerics;
 mod order;
@@ -14,6 +15,7 @@ pub use equivalence::{
     Counterexample, Equivalence, EquivalenceKind, EquivalenceLevel, Evidence, Mutant,
 };
 pub use families::{Families, FamilyShare, IntegralityShare, RivalFamilies};
+pub use growth::{Cell, Fit, Growth, GrowthPair, SizeMean};
 pub use ladder::{Ladder, RivalLadder, Rung};
 pub use numerics::{FamilyNumerics, Numerics, RivalNumerics};
 pub use order::{Certificate, Order, OrderLevel, Relation};
@@ -34,6 +36,8 @@ pub enum Report {
     Tightening(Tightening),
     /// Coefficients: their range, and how much can leak through them.
     Numerics(Numerics),
+    /// How rivals compare as instances grow.
+    Growth(Box<Growth>),
     /// A study that could not be made, and why.
     Left {
         /// Its kind.
@@ -54,6 +58,7 @@ impl Report {
             Self::Order(_) => "order",
             Self::Tightening(_) => "tightening",
             Self::Numerics(_) => "numerics",
+            Self::Growth(_) => "growth",
             Self::Left { kind, .. } => kind,
         }
     }
@@ -81,6 +86,7 @@ impl Serialize for Line<'_> {
             Report::Order(report) => self.named(report, serializer),
             Report::Tightening(report) => self.named(report, serializer),
             Report::Numerics(report) => self.named(report, serializer),
+            Report::Growth(report) => self.named(report.as_ref(), serializer),
             Report::Left { why, .. } => self.named(&LeftOut { left_out: why }, serializer),
         }
     }

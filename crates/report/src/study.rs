@@ -3,6 +3,7 @@
 
 mod equivalence;
 mod families;
+mod growth;
 mod ladder;
 mod numerics;
 mod order;
@@ -53,6 +54,7 @@ pub fn sections(report: &Report) -> Vec<Section> {
         Report::Order(report) => vec![order::section(report)],
         Report::Tightening(report) => tightening::sections(report),
         Report::Numerics(report) => numerics::sections(report),
+        Report::Growth(report) => growth::sections(report),
         Report::Left { kind, why } => {
             let verdict = vec![format!("left out: {why}")];
             vec![Section { heading: format!("Study: {kind}"), verdict, ..Section::default() }]

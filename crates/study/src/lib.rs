@@ -7,6 +7,7 @@
 //! | [`court`] | whether two rivals are the same problem |
 //! | [`mod@order`] | which of two relaxations is stronger, and how far that is known |
 //! | [`mod@tightening`] | how small the coefficients of switches can be |
+//! | [`mod@growth`] | how rivals compare as instances grow |
 //! | [`mod@numerics`] | how far coefficients range, and what leaks |
 //!
 //! A study takes [`Subject`]s, works at a [`Desk`] and gives a report of [`record::study`]; it runs in
@@ -15,18 +16,20 @@
 pub mod court;
 pub mod desk;
 pub mod families;
+pub mod growth;
 pub mod ladder;
 pub mod numerics;
 pub mod order;
 pub mod plan;
 mod propagate;
 pub mod shared;
+mod statistics;
 pub mod subject;
 pub mod tightening;
 mod words;
 
 pub use desk::{Desk, Running, Solved};
-pub use plan::Plan;
+pub use plan::{GrowthPlan, Plan};
 pub use subject::{Source, Subject, model_of};
 
 #[cfg(test)]

@@ -1,5 +1,6 @@
 //! What a scenario asks of a study: its limits and seeds.
 
+use catalogue::Class;
 use tree::Settings;
 
 /// The limits and seeds of a study.
@@ -23,6 +24,32 @@ pub struct Plan {
     pub best_known: Option<f64>,
     /// Whether rivals are broken on purpose to see that it is noticed.
     pub mutants: bool,
+    /// The instances of a growth study.
+    pub growth: GrowthPlan,
+}
+
+/// The instances of a growth study.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct GrowthPlan {
+    /// Sizes, as the generator or the sets of the instance count them.
+    pub sizes: Vec<u32>,
+    /// Seeds.
+    pub seeds: Vec<u64>,
+    /// Classes of generated data; none where parts of the scenario's own instance are taken.
+    pub classes: Vec<Class>,
+    /// The size that fits are drawn out to; that of the instance where none is given.
+    pub production: Option<u32>,
+}
+
+impl Default for GrowthPlan {
+    fn default() -> Self {
+        Self {
+            sizes: vec![6, 8, 10, 12],
+            seeds: vec![1, 2, 3, 4, 5],
+            classes: Vec::new(),
+            production: None,
+        }
+    }
 }
 
 impl Default for Plan {
@@ -37,6 +64,7 @@ impl Default for Plan {
             rows: 500,
             best_known: None,
             mutants: true,
+            growth: GrowthPlan::default(),
         }
     }
 }

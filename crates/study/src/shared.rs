@@ -20,16 +20,19 @@ pub struct Shared {
 type Place = (String, Vec<String>);
 
 /// The columns that two rivals share: of the variables that are chosen, else of their family's
-/// natural one, else of every variable that both name.
+/// natural one where that must be whole, else of every variable that both name.
 #[must_use]
 pub fn shared(a: &Subject, b: &Subject, chosen: &[String]) -> Shared {
     let natural = natural(a, b);
     let wanted = if chosen.is_empty() { natural.as_slice() } else { chosen };
     let found = common(&a.model, &b.model, wanted);
-    if found.pairs.is_empty() && chosen.is_empty() {
-        return common(&a.model, &b.model, &[]);
+    if !chosen.is_empty() || found.decides(&a.model, &b.model) {
+        return found;
     }
-    found
+    // Plans cannot be told apart by what may be fractional alone.
+    let all = common(&a.model, &b.model, &[]);
+    let better = found.pairs.is_empty() || all.decides(&a.model, &b.model);
+    if better { all } else { found }
 }
 
 /// The natural variable of the family that both come from.
@@ -81,16 +84,23 @@ fn places(model: &Model, wanted: &[String]) -> BTreeMap<Place, ColumnId> {
 }
 
 impl Shared {
+    /// Whether some of it must be whole.
+    fn decides(&self, a: &Model, b: &Model) -> bool {
+        self.pairs.iter().any(|&pair| is_whole(a, b, pair))
+    }
+
     /// The pairs that must be whole in either model: a plan is what they are. All pairs where
     /// none must be.
     #[must_use]
     pub fn deciding(&self, a: &Model, b: &Model) -> Vec<(ColumnId, ColumnId)> {
-        let whole = |&(left, right): &(ColumnId, ColumnId)| {
-            a.columns()[left.index()].integer || b.columns()[right.index()].integer
-        };
-        let deciding: Vec<_> = self.pairs.iter().copied().filter(whole).collect();
+        let deciding: Vec<_> =
+            self.pairs.iter().copied().filter(|&pair| is_whole(a, b, pair)).collect();
         if deciding.is_empty() { self.pairs.clone() } else { deciding }
     }
+}
+
+fn is_whole(a: &Model, b: &Model, (left, right): (ColumnId, ColumnId)) -> bool {
+    a.columns()[left.index()].integer || b.columns()[right.index()].integer
 }
 
 /// Whether a column lies between two finite bounds.

@@ -11,7 +11,7 @@ use yew::Reducible;
 use crate::state::document::Document;
 
 /// The kinds, each with its question and what is done to answer it.
-pub(crate) const KINDS: [(&str, &str, &str); 6] = [
+pub(crate) const KINDS: [(&str, &str, &str); 7] = [
     (
         "equivalence",
         "Are the rivals the same problem?",
@@ -39,6 +39,12 @@ pub(crate) const KINDS: [(&str, &str, &str); 6] = [
         "tightening",
         "Which coefficients could be smaller?",
         "The least that can be proved for each row that a binary switches, and what it buys.",
+    ),
+    (
+        "growth",
+        "How do they compare as the instance grows?",
+        "Every rival on parts of the instance, five of each size; paired, with what is not \
+         distinguishable said to be so.",
     ),
     ("numerics", "Do the coefficients range too far?", "Ranges, ratios, and what can leak."),
 ];

@@ -41,6 +41,24 @@ impl Class {
     /// All classes.
     pub const ALL: [Self; 5] =
         [Self::Uniform, Self::Euclidean, Self::Clustered, Self::ZeroOne, Self::NearlySymmetric];
+
+    /// The name by which scenarios choose it.
+    #[must_use]
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::Uniform => "uniform",
+            Self::Euclidean => "euclidean",
+            Self::Clustered => "clustered",
+            Self::ZeroOne => "zero-one",
+            Self::NearlySymmetric => "nearly symmetric",
+        }
+    }
+
+    /// The class of that name.
+    #[must_use]
+    pub fn from_name(name: &str) -> Option<Self> {
+        Self::ALL.into_iter().find(|class| class.name() == name)
+    }
 }
 
 /// An invented instance of a family as text, or `None` where the family has no generator or the

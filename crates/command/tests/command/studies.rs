@@ -99,3 +99,60 @@ fn a_field_that_a_study_does_not_have_is_said() {
     // The other studies are made all the same.
     assert!(out(&output).contains("Bound ladder of B"));
 }
+
+/// A growth study over parts of the instance.
+fn growth() -> String {
+    let head = &SCENARIO[..SCENARIO.find("[[study]]").unwrap_or_default()];
+    format!(
+        "{head}[run]\nsearch = false\n[[study]]\nkind = \"growth\"\nsizes = [3, 4, 5]\nseeds = [1, 2]\n"
+    )
+}
+
+#[test]
+fn cells_made_one_by_one_give_the_study_byte_for_byte() {
+    let text = growth();
+    let listed = out(&hullward(&["cells", "-"], &text));
+    let cells: Vec<&str> = listed.lines().collect();
+    // Three sizes, two seeds, two rivals.
+    assert_eq!(cells.len(), 12);
+    let folder = std::env::temp_dir().join(format!("hullward-cells-{}", std::process::id()));
+    std::fs::create_dir_all(&folder).expect("a folder");
+    let mut files = Vec::new();
+    // In an order of their own, as a batch queue would.
+    for cell in cells.iter().rev() {
+        let made = hullward(&["run", "--cell", cell, "-"], &text);
+        assert_eq!(status(&made), 0, "{}", err(&made));
+        let file = folder.join(format!("{cell}.json"));
+        std::fs::write(&file, made.stdout).expect("it is written");
+        files.push(file.to_string_lossy().into_owned());
+    }
+    let words = |json: &'static str| {
+        let mut words = vec!["gather", json];
+        words.extend(files.iter().map(String::as_str));
+        words
+    };
+    let whole = out(&hullward(&["run", "-", "--json"], &text));
+    let whole = whole.lines().last().unwrap_or_default().to_owned();
+    assert_eq!(out(&hullward(&words("--json"), "")).trim_end(), whole);
+    let object: Value = serde_json::from_str(&whole).expect("JSON");
+    assert_eq!(object["study"], "growth");
+    assert_eq!(object["pairs"][0]["instances"], 6);
+
+    let missing = hullward(&["gather", &files[0]], "");
+    assert_eq!(status(&missing), 2);
+    assert!(err(&missing).contains("cells are missing: 0, 1,"), "{}", err(&missing));
+    std::fs::remove_dir_all(&folder).expect("it was there");
+}
+
+#[test]
+fn generated_instances_of_each_class_are_paired() {
+    let text =
+        growth().replace("seeds = [1, 2]", "seeds = [1]\nclasses = [\"uniform\", \"zero-one\"]");
+    let object = studies(&text).remove(0);
+    assert_eq!(object["data"], "generated: atsp");
+    let cells = object["cells"].as_array().map(Vec::len);
+    assert_eq!((cells, &object["of"]), (Some(12), &Value::from(12)));
+    let wrong = text.replace("zero-one", "zero");
+    let said = err(&hullward(&["run", "-"], &wrong));
+    assert!(said.contains("there is no class \"zero\" of data; there are uniform"), "{said}");
+}

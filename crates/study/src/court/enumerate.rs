@@ -1,5 +1,5 @@
 //! Every plan of two models: those of the one are listed by excluding each that is found, and put
-//! into the other; then the other, with all of them excluded, must have none.
+//! into the other, at the same value; then the other, with all of them excluded, must have none.
 
 use std::rc::Rc;
 
@@ -10,10 +10,13 @@ use super::plans::{self, Outcome, Placed};
 use super::{Case, Findings};
 use crate::shared::is_binary;
 use crate::subject::Subject;
-use crate::words::of;
+use crate::words::{of, same};
 
 /// Rivals broken on purpose are compared where there are so many plans at most.
 const CONTROL: u32 = 30;
+
+/// Columns at most of models whose every plan is looked for though they cannot be made smaller.
+const MOST_COLUMNS: usize = 64;
 
 /// What comparing all plans came to.
 pub(crate) enum Compared {
@@ -29,7 +32,10 @@ impl Case<'_> {
     /// Compares all plans of sub-instances by rising size, up to the instance itself where that is
     /// small.
     pub(crate) async fn enumerations(&self, findings: &mut Findings) {
-        let mut same = Vec::new();
+        if self.extent().is_none() {
+            return self.enumeration(findings).await;
+        }
+        let mut compared = Vec::new();
         for &size in &self.plan.sizes {
             let Some(models) = self.first(size) else { continue };
             let part = self.with_models(&models);
@@ -40,7 +46,7 @@ impl Case<'_> {
             match part.compared().await {
                 Compared::Same(0) => {}
                 Compared::Same(plans) => {
-                    same.push((size, plans));
+                    compared.push((size, plans));
                     findings.compared = Some(size);
                     findings.all_compared = self.is_whole(size);
                     if plans <= CONTROL {
@@ -62,17 +68,38 @@ impl Case<'_> {
                 break;
             }
         }
-        if let Some(&(size, plans)) = same.last() {
-            let counts: Vec<String> = same.iter().map(|(_, plans)| plans.to_string()).collect();
+        if let Some(&(size, plans)) = compared.last() {
+            let counts: Vec<String> = compared.iter().map(|(_, plans)| plans.to_string()).collect();
             let outcome = match counts.as_slice() {
                 [_] => format!("the same {} on the first {size}", of(plans, "plan")),
                 _ => format!(
                     "the same {} plans on the first {} to {size}",
                     counts.join(", "),
-                    same[0].0
+                    compared[0].0
                 ),
             };
             findings.note("every plan", outcome, Some(true), plans);
+        }
+    }
+
+    /// Compares all plans of models that cannot be made smaller, where they are few.
+    async fn enumeration(&self, findings: &mut Findings) {
+        let [a, b] = self.rivals;
+        if self.shared.deciding(&a.model, &b.model).len() > MOST_COLUMNS {
+            return;
+        }
+        self.say("every plan");
+        match self.compared().await {
+            Compared::Same(plans) => {
+                findings.all_compared = true;
+                let outcome = format!("the same {}", of(plans, "plan"));
+                findings.note("every plan", outcome, Some(true), plans);
+            }
+            Compared::Differ(example) => {
+                findings.note("every plan", "different plans".to_owned(), Some(false), 1);
+                findings.differs(example);
+            }
+            Compared::Open(why) => findings.note("every plan", why, None, 0),
         }
     }
 
@@ -121,13 +148,23 @@ impl Case<'_> {
                 Ok(Some(_)) if found.len() >= self.plan.plans as usize => {
                     return Compared::Open(format!("more than {}", of(self.plan.plans, "plan")));
                 }
-                Ok(Some(plan)) => match plans::place(self, &plan, 1).await {
-                    Outcome::Refused(violated) => {
-                        return Compared::Differ(self.example(&plan, violated, 0));
+                Ok(Some(plan)) => {
+                    let own = plans::place(self, &plan, 0).await;
+                    match (own, plans::place(self, &plan, 1).await) {
+                        (_, Outcome::Refused(violated)) => {
+                            return Compared::Differ(self.example(&plan, violated, 0));
+                        }
+                        (Outcome::Value(left), Outcome::Value(right)) if same(left, right) => {
+                            found.push(plan);
+                        }
+                        (Outcome::Value(left), Outcome::Value(right)) => {
+                            let example = self.example(&plan, Vec::new(), 0);
+                            let values = Some((left, right));
+                            return Compared::Differ(Counterexample { values, ..example });
+                        }
+                        _ => return Compared::Open("a plan was not settled".to_owned()),
                     }
-                    Outcome::Open => return Compared::Open("a plan was not settled".to_owned()),
-                    Outcome::Value(_) => found.push(plan),
-                },
+                }
             }
         }
         match self.next(&deciding, &found, 1).await {

@@ -1,0 +1,180 @@
+//! The growth study in words.
+
+use record::study::{Fit, Growth, GrowthPair, SizeMean};
+
+use super::{Section, Table};
+use crate::number::{count, of, percent, short};
+
+/// What a reader must know of the figures.
+const MEANING: &str = "Work counts non-zeros touched, the same on every machine; means are \
+shifted geometric ones. A run that was stopped counts with what it had done until then, so that \
+its rival looks better than it is. Ratios are paired: the same instances for both.";
+
+pub(super) fn sections(growth: &Growth) -> Vec<Section> {
+    let mut sections = vec![sizes(growth)];
+    if !growth.pairs.is_empty() {
+        sections.push(pairs(growth));
+    }
+    if !growth.fits.is_empty() {
+        sections.push(fits(growth));
+    }
+    if !growth.profile.is_empty() {
+        sections.push(profile(growth));
+    }
+    sections
+}
+
+fn sizes(growth: &Growth) -> Section {
+    let head = ["rival", "size", "instances", "stopped", "root gap", "nodes", "work"];
+    let mut table = Table::new(&head, &[0]);
+    table.rows = growth.means.iter().map(mean).collect();
+    let failed = growth.cells.iter().filter(|cell| !cell.failed.is_empty()).count();
+    let mut notes = vec![MEANING.to_owned()];
+    if failed > 0 {
+        notes.push(format!("{} gave no result: no model of that size.", of(failed as u64, "run")));
+    }
+    Section {
+        heading: format!(
+            "Growth ({}; at most {} a run)",
+            growth.data,
+            of(u64::from(growth.nodes), "node")
+        ),
+        verdict: growth.pairs.iter().map(verdict).collect(),
+        table: Some(table),
+        notes,
+    }
+}
+
+fn mean(mean: &SizeMean) -> Vec<String> {
+    vec![
+        mean.rival.clone(),
+        count(u64::from(mean.size)),
+        count(u64::from(mean.instances)),
+        count(u64::from(mean.stopped)),
+        mean.gap.map_or_else(|| "–".to_owned(), percent),
+        short(mean.nodes),
+        short(mean.work),
+    ]
+}
+
+fn verdict(pair: &GrowthPair) -> String {
+    let [a, b] = &pair.rivals;
+    if pair.instances == 0 {
+        return format!("{a} and {b}: neither was solved on any instance within the limit.");
+    }
+    let times = format!(
+        "{} times the work (95 % interval {} to {}, {})",
+        short(pair.ratio),
+        short(pair.interval.0),
+        short(pair.interval.1),
+        of(u64::from(pair.instances), "instance")
+    );
+    if !pair.distinguishable {
+        return format!("{a} and {b} are not distinguishable: {b} takes {times}.");
+    }
+    let least = if pair.censored > 0 { "at least " } else { "" };
+    if pair.ratio >= 1.0 {
+        return format!("{b} takes {least}{times} that {a} takes.");
+    }
+    let turned = GrowthPair {
+        rivals: [b.clone(), a.clone()],
+        ratio: 1.0 / pair.ratio,
+        interval: (1.0 / pair.interval.1, 1.0 / pair.interval.0),
+        ..pair.clone()
+    };
+    verdict(&turned)
+}
+
+fn pairs(growth: &Growth) -> Section {
+    let head = [
+        "pair",
+        "less work",
+        "about the same",
+        "more work",
+        "sign test p",
+        "after Holm",
+        "one stopped",
+    ];
+    let mut table = Table::new(&head, &[0]);
+    table.rows = growth
+        .pairs
+        .iter()
+        .map(|pair| {
+            vec![
+                format!("{} against {}", pair.rivals[0], pair.rivals[1]),
+                count(u64::from(pair.wins)),
+                count(u64::from(pair.ties)),
+                count(u64::from(pair.losses)),
+                short(pair.p),
+                short(pair.adjusted),
+                count(u64::from(pair.censored)),
+            ]
+        })
+        .collect();
+    Section {
+        heading: "Instance by instance".to_owned(),
+        table: Some(table),
+        notes: vec!["About the same: within a tenth.".to_owned()],
+        ..Section::default()
+    }
+}
+
+fn fits(growth: &Growth) -> Section {
+    let size = count(u64::from(growth.production));
+    let at = format!("work at size {size}");
+    let head = ["rival", "growth", &at, "95 % from", "to", "fits"];
+    let mut table = Table::new(&head, &[0, 1]);
+    table.rows = growth.fits.iter().map(fit).collect();
+    Section {
+        heading: format!("Drawn out to size {size}"),
+        table: Some(table),
+        notes: vec![
+            "A fit is drawn out beyond what was seen: the band says how instances scatter, not \
+             whether growth goes on in the same way."
+                .to_owned(),
+        ],
+        ..Section::default()
+    }
+}
+
+fn fit(fit: &Fit) -> Vec<String> {
+    let words = if fit.model == "power" {
+        format!("size to the power {}", short(fit.factor))
+    } else {
+        format!("times {} for each element", short(fit.factor))
+    };
+    vec![fit.rival.clone(), words, short(fit.at), short(fit.low), short(fit.high), percent(fit.r2)]
+}
+
+fn profile(growth: &Growth) -> Section {
+    let mut rivals: Vec<&str> = Vec::new();
+    for cell in &growth.cells {
+        if !rivals.contains(&cell.rival.as_str()) {
+            rivals.push(&cell.rival);
+        }
+    }
+    let head: Vec<&str> = std::iter::once("work within").chain(rivals.iter().copied()).collect();
+    let mut table = Table::new(&head, &[0]);
+    table.rows = growth
+        .profile
+        .iter()
+        .map(|(factor, shares)| {
+            let head = format!("{} × the best", short(*factor));
+            std::iter::once(head).chain(shares.iter().map(|share| percent(*share))).collect()
+        })
+        .collect();
+    let mut notes = Vec::new();
+    if rivals.len() > 2 {
+        notes.push(
+            "With more than two rivals read each line against the best alone, not one rival \
+             against another (Gould & Scott 2016)."
+                .to_owned(),
+        );
+    }
+    Section {
+        heading: "Performance profile (Dolan & Moré 2002): share of instances solved".to_owned(),
+        table: Some(table),
+        notes,
+        ..Section::default()
+    }
+}

@@ -1,0 +1,162 @@
+//! The growth study: how rivals compare as instances grow.
+//!
+//! Every rival runs on every instance: generated ones, or parts of the scenario's own, over sizes,
+//! classes of data and seeds. A run that reaches the limit of nodes counts as stopped there: its work
+//! is at least so much. Rivals are compared on the same instances (paired ratios); what is not
+//! distinguishable is said to be so. Each run is a cell of its own, so that a batch queue can make
+//! them one by one; [`summed_up`] takes the cells however they were made.
+
+use std::collections::BTreeMap;
+use std::rc::Rc;
+
+use catalogue::{Class, generate};
+use instance::{Instance, read};
+use model::Model;
+use record::study::{Cell, Growth};
+use tree::Status;
+
+use crate::desk::Desk;
+use crate::plan::Plan;
+use crate::subject::{Source, Subject, model_of};
+
+mod summary;
+
+pub use summary::summed_up;
+
+/// One instance of a growth study.
+#[derive(Debug, Clone, PartialEq, Eq)]
+struct Setting {
+    size: u32,
+    class: Option<Class>,
+    seed: u64,
+}
+
+/// Runs every cell, or one of them where a number is given; sums up where all were run.
+pub async fn growth(
+    desk: Rc<Desk>,
+    subjects: Vec<Subject>,
+    plan: Plan,
+    cell: Option<u32>,
+) -> Growth {
+    let family = generated(&subjects, &plan);
+    let mut out = blank(&subjects, &plan, family.as_deref());
+    let mut number = 0;
+    for setting in settings(&plan, family.is_some()) {
+        let data = cell.is_none_or(|cell| is_of(cell, number, subjects.len()));
+        let instance = data.then(|| family.as_deref().and_then(|family| made(family, &setting)));
+        for subject in &subjects {
+            if cell.is_none_or(|cell| cell == number) {
+                let what =
+                    format!("{} at size {}, seed {}", subject.letter, setting.size, setting.seed);
+                desk.say(format!("run {} of {}: {what}", number + 1, out.of));
+                let instance = instance.as_ref().and_then(Option::as_ref);
+                let run = run(&desk, subject, (&setting, instance), &plan).await;
+                out.cells.push(Cell { cell: number, ..run });
+            }
+            number += 1;
+        }
+    }
+    if cell.is_none() { summed_up(out) } else { out }
+}
+
+/// How many cells a study has.
+#[must_use]
+pub fn cells(subjects: &[Subject], plan: &Plan) -> u32 {
+    let instances = settings(plan, generated(subjects, plan).is_some()).len();
+    u32::try_from(instances * subjects.len()).unwrap_or(u32::MAX)
+}
+
+/// Whether a cell is one of the rivals' of the instance that begins at `first`.
+fn is_of(cell: u32, first: u32, rivals: usize) -> bool {
+    cell >= first && (cell - first) as usize <= rivals
+}
+
+fn blank(subjects: &[Subject], plan: &Plan, family: Option<&str>) -> Growth {
+    let largest = plan.growth.sizes.iter().copied().max().unwrap_or(0);
+    let own = subjects.iter().filter_map(|subject| subject.source.as_ref());
+    let extent = own.map(|source| source.instance.extent()).max().unwrap_or(0);
+    let extent = u32::try_from(extent).unwrap_or(u32::MAX);
+    Growth {
+        data: match family {
+            Some(family) => format!("generated: {family}"),
+            None => "parts of the instance".to_owned(),
+        },
+        nodes: plan.nodes,
+        production: plan.growth.production.unwrap_or(extent.max(largest)),
+        seed: plan.seed,
+        of: cells(subjects, plan),
+        ..Growth::default()
+    }
+}
+
+/// The family whose generator makes the instances: where classes are named, or no rival has an
+/// instance of its own.
+fn generated(subjects: &[Subject], plan: &Plan) -> Option<String> {
+    let family = subjects.first()?.entry.as_ref()?.family.clone();
+    let same = |subject: &Subject| subject.entry.as_ref().is_some_and(|one| one.family == family);
+    (!plan.growth.classes.is_empty() && subjects.iter().all(same)).then_some(family)
+}
+
+fn settings(plan: &Plan, generated: bool) -> Vec<Setting> {
+    let classes: Vec<Option<Class>> = if generated {
+        plan.growth.classes.iter().copied().map(Some).collect()
+    } else {
+        vec![None]
+    };
+    let mut out = Vec::new();
+    for &size in &plan.growth.sizes {
+        for &class in &classes {
+            out.extend(plan.growth.seeds.iter().map(|&seed| Setting { size, class, seed }));
+        }
+    }
+    out
+}
+
+fn made(family: &str, setting: &Setting) -> Option<Instance> {
+    read(&generate(family, setting.size, setting.class?, setting.seed)?, None).instance
+}
+
+/// One rival on one instance.
+async fn run(
+    desk: &Desk,
+    subject: &Subject,
+    (setting, generated): (&Setting, Option<&Instance>),
+    plan: &Plan,
+) -> Cell {
+    let cell = Cell {
+        rival: subject.letter.clone(),
+        size: setting.size,
+        class: setting.class.map_or_else(String::new, |class| class.name().to_owned()),
+        seed: setting.seed,
+        ..Cell::default()
+    };
+    let source = subject.source.as_ref();
+    let model = source.and_then(|source| model_on(source, setting, generated));
+    let Some(model) = model.map(Rc::new) else {
+        return Cell { failed: "no model of that size".to_owned(), ..cell };
+    };
+    let count = |length: usize| u32::try_from(length).unwrap_or(u32::MAX);
+    let cell =
+        Cell { rows: count(model.row_count()), columns: count(model.columns().len()), ..cell };
+    let solved = desk.solve(&model, plan.search()).await;
+    Cell {
+        bound: solved.bound,
+        incumbent: solved.incumbent,
+        nodes: solved.nodes,
+        iterations: solved.iterations,
+        work: solved.work,
+        solved: solved.is_settled() && solved.status != Status::Limit,
+        ..cell
+    }
+}
+
+fn model_on(source: &Source, setting: &Setting, generated: Option<&Instance>) -> Option<Model> {
+    match (generated, setting.class) {
+        (Some(instance), _) => model_of(&source.text, instance, &BTreeMap::new(), &source.states),
+        (None, None) => {
+            let part = source.instance.part(setting.size as usize, Some(setting.seed));
+            model_of(&source.text, &part, &source.bind, &source.states)
+        }
+        (None, Some(_)) => None,
+    }
+}

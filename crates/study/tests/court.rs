@@ -43,7 +43,7 @@ fn verdict(subjects: [Subject; 2]) -> Equivalence {
         nodes: 2_000,
         ..Plan::default()
     };
-    let mut running = Running::new(|desk| court::court(desk, subjects.to_vec(), plan));
+    let mut running = Running::new(|desk| court::court(desk, Vec::from(subjects), plan));
     while !running.advance(1_000_000) {}
     running.take().expect("it is at its end").remove(0)
 }

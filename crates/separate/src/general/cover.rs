@@ -8,6 +8,7 @@
 use model::{ColumnId, Number, Row, nearest_f64};
 
 use super::aggregate::Frame;
+use super::derivation::{Derivation, Used};
 use super::mir::{LEAST, efficacy};
 use super::{Class, GeneralCut};
 
@@ -26,11 +27,13 @@ struct Item {
 /// The lifted cover that `x` violates, of either side of a row; `None` where the row is no knapsack
 /// of binaries or its cover is not violated.
 #[must_use]
-pub fn cover(row: &Row, frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
-    let upper = row.upper.as_ref().and_then(|side| one_side(&row.entries, side, frame, x));
+pub fn cover((number, row): (usize, &Row), frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
+    let of = |upper| Derivation::Knapsack(Used { row: number, upper });
+    let upper = row.upper.as_ref();
+    let upper = upper.and_then(|side| one_side((&row.entries, side), frame, x, of(true)));
     let lower = row.lower.as_ref().and_then(|side| {
         let turned: Vec<_> = row.entries.iter().map(|(c, a)| (*c, -a.clone())).collect();
-        one_side(&turned, &-side.clone(), frame, x)
+        one_side((&turned, &-side.clone()), frame, x, of(false))
     });
     match (upper, lower) {
         (Some(a), Some(b)) => Some(if a.efficacy < b.efficacy { b } else { a }),
@@ -39,10 +42,10 @@ pub fn cover(row: &Row, frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
 }
 
 fn one_side(
-    entries: &[(ColumnId, Number)],
-    side: &Number,
+    (entries, side): (&[(ColumnId, Number)], &Number),
     frame: &Frame,
     x: &[f64],
+    derivation: Derivation,
 ) -> Option<GeneralCut> {
     if entries.len() > MOST_COLUMNS {
         return None;
@@ -71,7 +74,7 @@ fn one_side(
     let right = inside.iter().filter(|inside| **inside).count() - 1;
     let row = written(&items, &coefficients, right);
     let efficacy = efficacy(&row, x);
-    (efficacy > LEAST).then_some(GeneralCut { class: Class::Cover, row, efficacy })
+    (efficacy > LEAST).then_some(GeneralCut { class: Class::Cover, row, efficacy, derivation })
 }
 
 /// A cover of which no element can be left out, cheap in `1 − value` for its weight.

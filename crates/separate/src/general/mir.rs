@@ -12,6 +12,7 @@ use std::collections::{BTreeMap, BTreeSet};
 use model::{ColumnId, Number, Row, nearest_f64};
 
 use super::aggregate::{Aggregate, Frame};
+use super::derivation::Derivation;
 use super::shorten::shortened;
 use super::{Class, GeneralCut};
 
@@ -24,7 +25,7 @@ pub(super) const LEAST: f64 = 1e-4;
 
 /// The cut of a sum that is divided by `divisor`, with each column moved to its nearer bound but
 /// those in `flips`; if `x` violates it.
-pub(super) fn rounded(
+fn rounded(
     sum: &Aggregate,
     frame: &Frame,
     x: &[f64],
@@ -51,7 +52,7 @@ pub(super) fn rounded(
     let mut entries: BTreeMap<ColumnId, Number> = BTreeMap::new();
     let mut side = floor;
     for (column, a, upper, bound) in moved {
-        let g = factor(&a, frame.integer[column.index()]);
+        let g = factor(&a, frame.integer[column.index()] && bound.is_int());
         let g = if upper { -g } else { g };
         side += &g * bound;
         *entries.entry(column).or_default() += g;
@@ -67,6 +68,39 @@ pub(super) fn rounded(
     Some(Row { entries, lower: None, upper: Some(side) })
 }
 
+/// The cut of a row that a rounding gave: with short numbers and its derivation, if it is good
+/// enough.
+fn finished(
+    (class, row): (Class, &Row),
+    sum: &Aggregate,
+    frame: &Frame,
+    x: &[f64],
+    (divisor, flips): (&Number, &BTreeSet<ColumnId>),
+) -> Option<GeneralCut> {
+    let row = shortened(row, frame)?;
+    let efficacy = efficacy(&row, x);
+    let is_upper = |c: &ColumnId| at_upper(frame, *c, x) == Some(!flips.contains(c));
+    let derivation = Derivation::Rounding {
+        sum: sum.used.clone(),
+        divisor: divisor.clone(),
+        upper: sum.columns().filter(is_upper).collect(),
+    };
+    (efficacy > LEAST).then_some(GeneralCut { class, row, efficacy, derivation })
+}
+
+/// The cut of a sum as it is, but for the columns that go to their farther bound.
+pub(super) fn plain(
+    class: Class,
+    sum: &Aggregate,
+    frame: &Frame,
+    x: &[f64],
+    flips: &BTreeSet<ColumnId>,
+) -> Option<GeneralCut> {
+    let way = (&Number::ONE, flips);
+    let row = rounded(sum, frame, x, way)?;
+    finished((class, &row), sum, frame, x, way)
+}
+
 /// The coefficient that the rounding gives.
 fn round_coefficient(a: &Number, whole: bool, f: &Number, rest: &Number) -> Number {
     if !whole {
@@ -78,7 +112,7 @@ fn round_coefficient(a: &Number, whole: bool, f: &Number, rest: &Number) -> Numb
 }
 
 /// Whether a column is nearer to its upper bound; `None` where it has no bound.
-fn at_upper(frame: &Frame, column: ColumnId, x: &[f64]) -> Option<bool> {
+pub(super) fn at_upper(frame: &Frame, column: ColumnId, x: &[f64]) -> Option<bool> {
     let value = x[column.index()];
     match &frame.bounds[column.index()] {
         (None, None) => None,
@@ -92,7 +126,7 @@ fn at_upper(frame: &Frame, column: ColumnId, x: &[f64]) -> Option<bool> {
 /// between their bounds give the divisors, the best of these is halved up to three times, and then
 /// such columns are moved to their other bound while that makes the cut better.
 #[must_use]
-pub fn complemented(sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
+pub fn complemented(class: Class, sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
     let between = |column: &ColumnId| {
         let (lower, upper) = &frame.bounds[column.index()];
         let value = x[column.index()];
@@ -125,9 +159,7 @@ pub fn complemented(sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<General
         }
     }
     let (_, _, row) = best.found?;
-    let row = shortened(&row, frame)?;
-    let efficacy = efficacy(&row, x);
-    (efficacy > LEAST).then_some(GeneralCut { class: Class::Mir, row, efficacy })
+    finished((class, &row), sum, frame, x, (&divisor, &flips))
 }
 
 /// Gomory's mixed-integer cut of a sum that is a row of the tableau, in the better of its two
@@ -135,12 +167,7 @@ pub fn complemented(sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<General
 #[must_use]
 pub fn from_tableau(sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
     let none = BTreeSet::new();
-    let cut = |sum: &Aggregate| {
-        let row = rounded(sum, frame, x, (&Number::ONE, &none))?;
-        let row = shortened(&row, frame)?;
-        let efficacy = efficacy(&row, x);
-        (efficacy > LEAST).then_some(GeneralCut { class: Class::Gomory, row, efficacy })
-    };
+    let cut = |sum: &Aggregate| plain(Class::Gomory, sum, frame, x, &none);
     match (cut(sum), cut(&sum.turned())) {
         (Some(a), Some(b)) => Some(if b.efficacy > a.efficacy { b } else { a }),
         (a, b) => a.or(b),

@@ -61,7 +61,9 @@ pub fn choose(mut cuts: Vec<GeneralCut>, most: usize) -> Vec<GeneralCut> {
     taken
 }
 
-fn cosine(a: &GeneralCut, b: &GeneralCut) -> f64 {
+/// The cosine of the angle between the directions of two cuts.
+#[must_use]
+pub fn cosine(a: &GeneralCut, b: &GeneralCut) -> f64 {
     let length = |cut: &GeneralCut| {
         cut.row.entries.iter().fold(0.0, |sum, (_, a)| sum + nearest_f64(a) * nearest_f64(a)).sqrt()
     };

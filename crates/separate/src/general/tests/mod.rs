@@ -5,7 +5,13 @@ use model::{ColumnId, Number, Row};
 use rand_core::Rng;
 use rand_pcg::Pcg64Mcg;
 
-use super::{Aggregate, Frame, GeneralCut, choose, complemented, cover, fraction};
+use super::{
+    Aggregate, Class, Derivation, Frame, GeneralCut, Used, choose, complemented, cover, follows,
+    fraction,
+};
+
+mod mixed;
+mod structures;
 
 fn below(random: &mut Pcg64Mcg, limit: u32) -> i64 {
     i64::from(random.next_u32() % limit)
@@ -56,9 +62,21 @@ impl Drawn {
     }
 
     fn check(&self, cut: &GeneralCut, points: &[Vec<i64>]) {
-        for point in points {
-            assert!(holds(&cut.row, point), "{cut:?} at {point:?} of {:?}", self.rows);
-        }
+        check(cut, (&self.rows, &self.frame), points);
+    }
+}
+
+/// A cut holds at every point and follows from its derivation; made stronger by 1, it does not
+/// follow where a point then breaks it.
+fn check(cut: &GeneralCut, (rows, frame): (&[Row], &Frame), points: &[Vec<i64>]) {
+    for point in points {
+        assert!(holds(&cut.row, point), "{cut:?} at {point:?} of {rows:?}");
+    }
+    assert!(follows(cut, rows, frame), "{cut:?} of {rows:?}");
+    let mut wrong = cut.clone();
+    wrong.row.upper = wrong.row.upper.map(|side| side - Number::ONE);
+    if points.iter().any(|point| !holds(&wrong.row, point)) {
+        assert!(!follows(&wrong, rows, frame), "{wrong:?} of {rows:?}");
     }
 }
 
@@ -85,13 +103,13 @@ fn roundings_hold_at_every_whole_point() {
                 })
                 .collect();
             let mut sum = Aggregate::default();
-            for row in &drawn.rows {
+            for (number, row) in drawn.rows.iter().enumerate() {
                 let multiplier =
                     Number::from_parts((below(&mut random, 13) - 6).into(), 4_u32.into());
-                sum.add(&drawn.frame, row, &multiplier, &x);
+                sum.add(&drawn.frame, (number, row), &multiplier, &x);
             }
             for sum in [sum.turned(), sum] {
-                if let Some(cut) = complemented(&sum, &drawn.frame, &x) {
+                if let Some(cut) = complemented(Class::Mir, &sum, &drawn.frame, &x) {
                     drawn.check(&cut, &points);
                     cuts += 1;
                 }
@@ -113,7 +131,7 @@ fn lifted_covers_hold_at_every_whole_point() {
             for _ in 0..12 {
                 let x: Vec<f64> =
                     (0..7).map(|_| 1.0 - below(&mut random, 6) as f64 / 16.0).collect();
-                if let Some(cut) = cover(row, &drawn.frame, &x) {
+                if let Some(cut) = cover((0, row), &drawn.frame, &x) {
                     alone.check(&cut, &points);
                     cuts += 1;
                     lifted += u32::from(cut.row.entries.iter().any(|(_, a)| {
@@ -137,8 +155,8 @@ fn one_column_is_rounded_down() {
         upper: Some(Number::from(20)),
     };
     let mut sum = Aggregate::default();
-    assert!(sum.add(&frame, &row, &Number::ONE, &[2.5]));
-    let cut = complemented(&sum, &frame, &[2.5]).unwrap();
+    assert!(sum.add(&frame, (0, &row), &Number::ONE, &[2.5]));
+    let cut = complemented(Class::Mir, &sum, &frame, &[2.5]).unwrap();
     assert!(holds(&cut.row, &[2]) && !holds(&cut.row, &[3]));
     assert!(cut.row.activity(&[2.5]) > model::nearest_f64(cut.row.upper.as_ref().unwrap()));
 }
@@ -161,13 +179,14 @@ fn multipliers_become_simple_fractions() {
 #[test]
 fn parallel_cuts_are_left_out() {
     let cut = |a: i64, b: i64, efficacy: f64| GeneralCut {
-        class: super::Class::Mir,
+        class: Class::Mir,
         row: Row {
             entries: vec![(ColumnId(0), Number::from(a)), (ColumnId(1), Number::from(b))],
             lower: None,
             upper: Some(Number::ONE),
         },
         efficacy,
+        derivation: Derivation::Knapsack(Used { row: 0, upper: true }),
     };
     let taken = choose(vec![cut(1, 1, 0.1), cut(10, 11, 0.3), cut(1, -1, 0.2)], 5);
     assert_eq!(taken.iter().map(|cut| cut.efficacy).collect::<Vec<_>>(), [0.3, 0.2]);

@@ -1,16 +1,18 @@
-//! One round of general cuts: rows of the tableau, and rows of the relaxation alone or with others
-//! that cancel a continuous column, one after the other.
+//! One round of general cuts: rows of the tableau, rows of the relaxation alone or with others that
+//! cancel a continuous column, and the structures among them, one after the other.
 
 use std::collections::{BTreeMap, BTreeSet};
 
 use lp::Col;
 use model::{ColumnId, Number, Row, nearest_f64};
 use separate::general::{
-    Aggregate, Class, Frame, GeneralCut, complemented, cover, fraction, from_tableau,
+    Aggregate, Class, Conflicts, Frame, GeneralCut, Lots, OddCuts, Trips, VariableBounds,
+    complemented, cover, flow_cover, fraction, from_tableau, zero_half,
 };
 
 use crate::branching::is_fractional;
 use crate::relaxation::Relaxation;
+use crate::round_trip::RoundTrip;
 use crate::settings::Cuts;
 
 /// Rows of the tableau that are looked at in a round.
@@ -25,27 +27,48 @@ const MOST_SUMMED: usize = 4;
 enum Task {
     Tableau(ColumnId),
     Row(usize),
+    /// A literal of the conflict graph.
+    Literal(usize),
+    ZeroHalf,
+    Lot(usize),
+    Odd,
+    /// The first stop of cuts of round trips.
+    Stop(usize),
+}
+
+/// The structures that were recognised.
+#[derive(Debug, Default)]
+struct Structures {
+    bounds: VariableBounds,
+    conflicts: Option<Conflicts>,
+    lots: Option<Lots>,
+    odd: Option<OddCuts>,
+    trips: Option<Trips>,
 }
 
 /// A round under way.
 #[derive(Debug)]
 pub(crate) struct CutRound {
     wanted: Cuts,
-    x: Vec<f64>,
-    rows: Vec<Row>,
+    pub(crate) x: Vec<f64>,
+    /// The rows that derivations speak of.
+    pub(crate) rows: Vec<Row>,
     /// The rows in which a continuous column stands that is between its bounds.
     of_column: BTreeMap<ColumnId, Vec<usize>>,
+    structures: Structures,
     tasks: Vec<Task>,
     pub(crate) found: Vec<GeneralCut>,
     pub(crate) ticks: u64,
 }
 
 impl CutRound {
-    /// Gathers the rows. `O(non-zeros)`.
+    /// Gathers the rows and structures. `O(non-zeros · log)`, and of the conflict graph
+    /// `O(fractional²)`.
     pub(crate) fn new(
         relaxation: &Relaxation,
         frame: &Frame,
         (wanted, whole): (Cuts, &[ColumnId]),
+        trip: Option<&RoundTrip>,
         x: &[f64],
     ) -> Self {
         let count = relaxation.row_count();
@@ -58,39 +81,102 @@ impl CutRound {
                 of_column.entry(*column).or_default().push(index);
             }
         }
+        let ticks = rows.iter().map(|row| row.entries.len() as u64).sum();
+        let mut round = Self {
+            wanted,
+            x: x.to_vec(),
+            rows,
+            of_column,
+            structures: Structures::default(),
+            tasks: Vec::new(),
+            found: Vec::new(),
+            ticks,
+        };
+        round.recognise(frame, trip);
+        round.plan(whole);
+        round
+    }
+
+    fn recognise(&mut self, frame: &Frame, trip: Option<&RoundTrip>) {
+        let (rows, x, wanted) = (&self.rows, &self.x, self.wanted.classes);
+        let found = &mut self.structures;
+        if wanted.has(Class::FlowCover) {
+            found.bounds = VariableBounds::new(rows, frame);
+        }
+        if wanted.any(&[Class::Clique, Class::OddHole]) {
+            found.conflicts = Some(Conflicts::new(rows, frame, x));
+        }
+        if wanted.has(Class::LotSizing) {
+            found.lots = Some(Lots::new(rows, frame));
+        }
+        if wanted.any(&[Class::Blossom, Class::OddSet]) {
+            found.odd = OddCuts::new(rows, frame, x);
+        }
+        let trip = trip.filter(|_| wanted.has(Class::RoundTrip));
+        found.trips = trip.and_then(|trip| Trips::new(&trip.stops, &trip.arcs, rows, frame));
+    }
+
+    /// What is looked at, in order.
+    fn plan(&mut self, whole: &[ColumnId]) {
+        let (x, wanted) = (&self.x, self.wanted.classes);
         let mut fractional: Vec<ColumnId> =
             whole.iter().copied().filter(|c| is_fractional(x[c.index()])).collect();
         let off = |c: &ColumnId| (x[c.index()] - x[c.index()].floor() - 0.5).abs();
         fractional.sort_by(|a, b| off(a).total_cmp(&off(b)).then(a.cmp(b)));
-        fractional.truncate(if wanted.gomory { MOST_TABLEAU } else { 0 });
-        let single = if wanted.mir || wanted.cover { MOST_ROWS } else { 0 };
-        let tight = (0..rows.len()).filter(|&index| touches(&rows[index], x)).take(single);
+        fractional.truncate(if wanted.has(Class::Gomory) { MOST_TABLEAU } else { 0 });
+        let single = wanted.any(&[Class::Mir, Class::Cover, Class::FlowCover]);
+        let single = if single { MOST_ROWS } else { 0 };
+        let tight = (0..self.rows.len()).filter(|&i| touches(&self.rows[i], x)).take(single);
         let mut tasks: Vec<Task> = tight.map(Task::Row).collect();
         tasks.extend(fractional.into_iter().map(Task::Tableau));
+        let found = &self.structures;
+        let literals = found.conflicts.as_ref().map_or(0, Conflicts::len);
+        tasks.extend((0..literals).map(Task::Literal));
+        tasks.extend((0..found.lots.as_ref().map_or(0, Lots::places)).map(Task::Lot));
+        tasks.extend((0..found.trips.as_ref().map_or(0, Trips::len)).map(Task::Stop));
+        tasks.extend(wanted.has(Class::ZeroHalf).then_some(Task::ZeroHalf));
+        tasks.extend(found.odd.as_ref().map(|_| Task::Odd));
         tasks.reverse();
-        let ticks = rows.iter().map(|row| row.entries.len() as u64).sum();
-        Self { wanted, x: x.to_vec(), rows, of_column, tasks, found: Vec::new(), ticks }
+        self.tasks = tasks;
     }
 
-    /// Looks at the next row; false when all are done.
+    /// Looks at the next thing; false when all are done.
     pub(crate) fn step(&mut self, relaxation: &mut Relaxation, frame: &Frame) -> bool {
-        match self.tasks.pop() {
-            None => return false,
-            Some(Task::Tableau(column)) => self.tableau(relaxation, frame, column),
-            Some(Task::Row(index)) => self.row(frame, index),
+        let Some(task) = self.tasks.pop() else { return false };
+        self.ticks += 1;
+        match task {
+            Task::Tableau(column) => self.tableau(relaxation, frame, column),
+            Task::Row(index) => self.row(frame, index),
+            Task::Literal(place) => self.literal(place),
+            Task::ZeroHalf => {
+                self.ticks += self.rows.iter().map(|row| row.entries.len() as u64).sum::<u64>();
+                self.found.extend(zero_half(&self.rows, frame, &self.x));
+            }
+            Task::Lot(place) => {
+                let lots = self.structures.lots.as_ref();
+                self.found
+                    .extend(lots.and_then(|lots| lots.cut(place, &self.rows, frame, &self.x)));
+            }
+            Task::Odd => self.odd(frame),
+            Task::Stop(first) => {
+                let Some(trips) = &mut self.structures.trips else { return true };
+                self.ticks += (trips.len() * trips.len()) as u64;
+                let of = (relaxation.model(), frame);
+                self.found.extend(trips.cuts(first, of, &mut self.rows, &self.x));
+            }
         }
         true
     }
 
     fn tableau(&mut self, relaxation: &mut Relaxation, frame: &Frame, column: ColumnId) {
-        self.ticks += 1;
         let Some(row) = relaxation.simplex.tableau_row(Col(column.0)) else { return };
         let mut sum = Aggregate::default();
         for (index, multiplier) in row.multipliers {
             let Some(multiplier) = fraction(multiplier).filter(|y| !y.is_zero()) else { continue };
-            let Some(row) = self.rows.get(index.0 as usize) else { return };
+            let index = index.0 as usize;
+            let Some(row) = self.rows.get(index) else { return };
             self.ticks += row.entries.len() as u64;
-            if !sum.add(frame, row, &multiplier, &self.x) {
+            if !sum.add(frame, (index, row), &multiplier, &self.x) {
                 return;
             }
         }
@@ -98,26 +184,54 @@ impl CutRound {
     }
 
     fn row(&mut self, frame: &Frame, index: usize) {
-        self.ticks += 1 + 4 * self.rows[index].entries.len() as u64;
-        if self.wanted.cover {
-            self.found.extend(cover(&self.rows[index], frame, &self.x));
+        self.ticks += 4 * self.rows[index].entries.len() as u64;
+        let (classes, row) = (self.wanted.classes, &self.rows[index]);
+        if classes.has(Class::Cover) {
+            self.found.extend(cover((index, row), frame, &self.x));
         }
-        if self.wanted.mir {
+        if classes.has(Class::FlowCover) {
+            let bounds = &self.structures.bounds;
+            self.found.extend(flow_cover(&self.rows, index, bounds, frame, &self.x));
+        }
+        if classes.has(Class::Mir) {
             let cut = self.rounding(frame, index);
             self.found.extend(cut);
         }
     }
 
+    fn literal(&mut self, place: usize) {
+        let Some(graph) = &self.structures.conflicts else { return };
+        self.ticks += (graph.len() * 4) as u64;
+        if self.wanted.classes.has(Class::Clique) {
+            self.found.extend(graph.cliques(place, &self.x));
+        }
+        if self.wanted.classes.has(Class::OddHole) {
+            self.found.extend(graph.hole(place, &self.x));
+        }
+    }
+
+    /// One flow of the odd cuts; at the end what they gave of the classes that are wanted.
+    fn odd(&mut self, frame: &Frame) {
+        let Some(odd) = &mut self.structures.odd else { return };
+        if let Some(ticks) = odd.step() {
+            self.ticks += ticks;
+            self.tasks.push(Task::Odd);
+            return;
+        }
+        let cuts = odd.cuts(&self.rows, frame, &self.x).into_iter();
+        self.found.extend(cuts.filter(|cut| self.wanted.classes.has(cut.class)));
+    }
+
     /// The rounding of a row, or of it with others, as soon as one is violated.
     fn rounding(&mut self, frame: &Frame, index: usize) -> Option<GeneralCut> {
         let mut sum = Aggregate::default();
-        if !sum.add(frame, &self.rows[index], &Number::ONE, &self.x) {
+        if !sum.add(frame, (index, &self.rows[index]), &Number::ONE, &self.x) {
             return None;
         }
         let mut used = BTreeSet::from([index]);
         loop {
-            let turned = complemented(&sum.turned(), frame, &self.x);
-            let both = [complemented(&sum, frame, &self.x), turned];
+            let turned = complemented(Class::Mir, &sum.turned(), frame, &self.x);
+            let both = [complemented(Class::Mir, &sum, frame, &self.x), turned];
             let better = |a: GeneralCut, b: GeneralCut| if b.efficacy > a.efficacy { b } else { a };
             if let Some(cut) = both.into_iter().flatten().reduce(better) {
                 return Some(cut);
@@ -128,7 +242,7 @@ impl CutRound {
             let (next, multiplier) = self.partner(&sum, &used)?;
             self.ticks += 4 * self.rows[next].entries.len() as u64;
             used.insert(next);
-            if !sum.add(frame, &self.rows[next], &multiplier, &self.x) {
+            if !sum.add(frame, (next, &self.rows[next]), &multiplier, &self.x) {
                 return None;
             }
         }
@@ -148,12 +262,6 @@ impl CutRound {
         }
         None
     }
-}
-
-/// How many cuts are of a class.
-pub(crate) fn count(cuts: &[GeneralCut], class: Class) -> u32 {
-    let count = cuts.iter().filter(|cut| cut.class == class).count();
-    u32::try_from(count).unwrap_or(u32::MAX)
 }
 
 /// Whether a column is between its bounds.

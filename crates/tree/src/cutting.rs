@@ -1,24 +1,29 @@
-//! General cuts at the root, in rounds: the relaxation is solved, rows are looked at, the best cuts
-//! that are not parallel are added, until none is found, the bound no longer rises or the limit is
-//! reached. The root stays as it was reported; its children start from the basis with the cuts.
+//! General cuts in rounds. At the root: the relaxation is solved, rows are looked at, the best cuts
+//! that are not parallel are added and those that were slack for long are purged, until none is found,
+//! the bound no longer rises or the limit is reached. The root stays as it was reported; its children
+//! start from the basis with the cuts. Below the root: at the nodes that the settings name, from the
+//! bounds of the root, so that the cuts hold everywhere.
 
 use std::rc::Rc;
 
 use lp::Basis;
 use model::{Model, nearest_f64};
-use separate::general::{Class, Frame, choose};
+use separate::general::{Class, Frame, GeneralCut, choose, follows};
 
-use crate::cut_round::{CutRound, count};
+use crate::cut_round::CutRound;
 use crate::event::{NodeId, NodeState};
-use crate::relaxation::Relaxation;
-use crate::search::{Hand, Job, Progress, Purpose, Search};
+use crate::pool::Pool;
+use crate::relaxation::{Relaxation, RowOrigin};
+use crate::search::{Hand, Job, PointInHand, Progress, Purpose, Search};
 use crate::solution::{Solution, Verdict};
 use crate::target::{float_below, signed};
 
-/// Rounds at most.
+/// Rounds at the root at most.
 const MOST_ROUNDS: u32 = 30;
 /// Cuts that a round adds at most.
 const MOST_CUTS: usize = 40;
+/// Cuts below the root at most: their rows stay.
+const MOST_BELOW: u32 = 2_000;
 /// A rise of the bound that is less than this share of it does not count.
 const RISE: f64 = 1e-5;
 /// Rounds in a row without a rise that end the cuts.
@@ -26,39 +31,63 @@ const STALLED: u32 = 4;
 /// By how much a solution may break a cut by the rounding of its floats.
 const ROUNDED: f64 = 1e-6;
 
+/// Something for each class of cuts, in the order of [`Class::ALL`].
+pub type ByClass<T> = [T; Class::ALL.len()];
+
 /// What general cuts gave.
 #[derive(Debug, Clone, Copy, Default, PartialEq)]
 pub struct CutsResult {
     /// The bound of the root's relaxation with them, in the direction of the objective.
     pub bound: Option<f64>,
-    /// Rounds that added some.
+    /// Rounds at the root that added some.
     pub rounds: u32,
-    /// How many of each class were added: Gomory, mixed-integer rounding, cover.
-    pub added: [u32; 3],
+    /// How many of each class were added, at the root and below.
+    pub added: ByClass<u32>,
+    /// How many of each class are in the relaxation.
+    pub kept: ByClass<u32>,
+    /// What each class moved the bound of the root by: the rise of each round is shared out by
+    /// the violation of its cuts times their multipliers after it.
+    pub moved: ByClass<f64>,
+    /// How many were added below the root.
+    pub below: u32,
+    /// How many were purged.
+    pub purged: u32,
+    /// How many came back from the pool.
+    pub returned: u32,
+    /// How many were left out because they do not follow from their derivation: none should.
+    pub refused: u32,
 }
 
 /// The state of the rounds.
 #[derive(Debug)]
 pub(crate) struct Cutting {
     frame: Frame,
+    pool: Pool,
     result: CutsResult,
     done: bool,
     stalled: u32,
     last: f64,
     basis: Option<Basis>,
     point: Option<(f64, Vec<f64>)>,
+    /// The cuts of the last round by number, with what the point before broke them by.
+    fresh: Vec<(usize, f64)>,
+    /// The bound before that round.
+    before: Option<f64>,
 }
 
 impl Cutting {
     pub(crate) fn new(model: &Rc<Model>) -> Self {
         Self {
             frame: Frame::new(model),
+            pool: Pool::default(),
             result: CutsResult::default(),
             done: false,
             stalled: 0,
             last: f64::NEG_INFINITY,
             basis: None,
             point: None,
+            fresh: Vec::new(),
+            before: None,
         }
     }
 
@@ -82,22 +111,62 @@ impl Cutting {
         }
         self.stalled >= STALLED
     }
-}
 
-/// The class of a cut in a word.
-pub(crate) fn class_name(class: Class) -> &'static str {
-    match class {
-        Class::Gomory => "Gomory",
-        Class::Mir => "rounding",
-        Class::Cover => "cover",
+    /// Shares the rise of the last round out among the classes of its cuts.
+    fn share(&mut self, relaxation: &Relaxation, point: &PointInHand) {
+        let rise = self.before.map_or(0.0, |before| point.bound - before);
+        self.before = Some(point.bound);
+        let fresh = std::mem::take(&mut self.fresh);
+        let mut shares: Vec<(Class, f64)> = Vec::new();
+        for (origin, y) in relaxation.origins().iter().zip(&point.duals) {
+            let RowOrigin::Cut(class, number) = origin else { continue };
+            let broken = fresh.iter().find(|(fresh, _)| fresh == number);
+            shares.extend(broken.map(|(_, by)| (*class, (y * by).abs())));
+        }
+        let all = shares.iter().fold(0.0, |all, (_, share)| all + share);
+        if all > 0.0 && rise > 0.0 {
+            for (class, share) in shares {
+                self.result.moved[class.index()] += rise * share / all;
+            }
+        }
+    }
+
+    /// The cuts of a round that are taken, with their numbers: the best that are not parallel, those
+    /// of the pool among them, each checked.
+    fn chosen(&mut self, round: &mut CutRound) -> Vec<(usize, GeneralCut)> {
+        let mut found = self.pool.violated(&round.x);
+        found.append(&mut round.found);
+        let mut taken: Vec<(usize, GeneralCut)> = Vec::new();
+        let mut next = self.pool.len();
+        for cut in choose(found, MOST_CUTS) {
+            match self.pool.find(&cut.row) {
+                Some((_, true)) => {}
+                Some((number, false)) => {
+                    self.result.returned += 1;
+                    taken.push((number, cut));
+                }
+                None if follows(&cut, &round.rows, &self.frame) => {
+                    taken.push((next, cut));
+                    next += 1;
+                }
+                None => self.result.refused += 1,
+            }
+        }
+        for (number, cut) in &taken {
+            self.result.added[cut.class.index()] += u32::from(*number >= self.pool.len());
+            self.pool.enter(*number, cut.clone());
+        }
+        taken
     }
 }
 
 impl Search {
-    /// What general cuts gave; `None` where none were asked for, or they have not ended.
+    /// What general cuts gave; `None` where none were asked for, or those of the root have not
+    /// ended.
     #[must_use]
     pub fn cuts(&self) -> Option<CutsResult> {
-        self.cutting.as_ref().filter(|cutting| cutting.done).map(|cutting| cutting.result)
+        let cutting = self.cutting.as_ref().filter(|cutting| cutting.done)?;
+        Some(CutsResult { kept: cutting.pool.inside(), ..cutting.result })
     }
 
     /// Takes the root in hand once more, where general cuts are wanted and can help.
@@ -114,7 +183,17 @@ impl Search {
         self.solve()
     }
 
-    /// The relaxation with the cuts so far is solved: looks for more, or ends.
+    /// Whether a round of cuts is due at the node in hand, which is below the root.
+    pub(crate) fn cuts_here(&self) -> bool {
+        let (Some(cutting), Some(hand)) = (&self.cutting, &self.hand) else { return false };
+        let cuts = self.settings.cuts;
+        let depth = self.tree.node(hand.node).depth;
+        let due = depth.checked_rem(cuts.every) == Some(0) && hand.node != NodeId::ROOT;
+        let room = hand.cut_rounds < cuts.rounds && cutting.result.below < MOST_BELOW;
+        cutting.done && due && room
+    }
+
+    /// The relaxation of the root with the cuts so far is solved: looks for more, or ends.
     pub(crate) fn cut_round(&mut self) -> Option<Progress> {
         let (Some(cutting), Some(hand), Some(relaxation)) =
             (&mut self.cutting, &self.hand, &self.relaxation)
@@ -122,23 +201,31 @@ impl Search {
             return None;
         };
         let point = hand.point.as_ref()?;
+        cutting.share(relaxation, point);
         let whole = self.chooser.fractional(&point.x) == 0;
         let stalled = cutting.stalls(point.bound);
         let enough = cutting.result.rounds >= MOST_ROUNDS;
         if whole || stalled || enough || self.target.closes(point.bound) {
             return self.finish_cuts();
         }
+        self.start_cut_round()
+    }
+
+    /// Begins to look for cuts at the point in hand.
+    pub(crate) fn start_cut_round(&mut self) -> Option<Progress> {
+        let (cutting, relaxation) = (self.cutting.as_ref()?, self.relaxation.as_ref()?);
+        let x = &self.hand.as_ref()?.point.as_ref()?.x;
         let wanted = (self.settings.cuts, self.chooser.whole());
-        let round = CutRound::new(relaxation, &cutting.frame, wanted, &point.x);
+        let round = CutRound::new(relaxation, &cutting.frame, wanted, self.trip.as_deref(), x);
         self.ledger.ticks += round.ticks;
         self.job = Job::Cut(Box::new(round));
         None
     }
 
-    /// Goes on with a round by one row; adds what it found at its end.
+    /// Goes on with a round by one step; adds what it found at its end.
     pub(crate) fn advance_cuts(&mut self) -> Option<Progress> {
-        let (Job::Cut(round), Some(relaxation), Some(cutting)) =
-            (&mut self.job, &mut self.relaxation, &mut self.cutting)
+        let (Job::Cut(round), Some(relaxation), Some(cutting), Some(hand)) =
+            (&mut self.job, &mut self.relaxation, &mut self.cutting, &mut self.hand)
         else {
             return None;
         };
@@ -148,34 +235,60 @@ impl Search {
         if more {
             return None;
         }
-        let cuts = choose(std::mem::take(&mut round.found), MOST_CUTS);
+        let cuts = cutting.chosen(round);
         if cuts.is_empty() {
-            return self.finish_cuts();
+            return self.no_more_cuts();
         }
-        cutting.result.rounds += 1;
-        let classes = [Class::Gomory, Class::Mir, Class::Cover];
-        for (added, class) in cutting.result.added.iter_mut().zip(classes) {
-            *added += count(&cuts, class);
+        if hand.cutting {
+            cutting.result.rounds += 1;
+            let first = self.tree.node(NodeId::ROOT).rows as usize;
+            let gone = cutting.pool.slack(relaxation, &round.x, (first, false));
+            cutting.result.purged += u32::try_from(gone.len()).unwrap_or(u32::MAX);
+            let broken = cuts.iter().map(|(number, cut)| (*number, cut.violation_at(&round.x)));
+            cutting.fresh = broken.collect();
+            if relaxation.drop_rows(&gone).is_err() {
+                return self.finish_cuts();
+            }
+        } else {
+            let count = u32::try_from(cuts.len()).unwrap_or(u32::MAX);
+            hand.cut_rounds += 1;
+            hand.rows_added += count;
+            cutting.result.below += count;
         }
-        match relaxation.add_cuts(cuts) {
+        match relaxation.add_cuts(&cuts) {
             Ok(()) => self.solve(),
-            Err(_) => self.finish_cuts(),
+            Err(_) => self.no_more_cuts(),
         }
     }
 
-    /// Ends the rounds: the children of the root start from here.
+    /// There are no more cuts for the node in hand.
+    fn no_more_cuts(&mut self) -> Option<Progress> {
+        let hand = self.hand.as_mut()?;
+        if hand.cutting {
+            return self.finish_cuts();
+        }
+        hand.cut_rounds = u32::MAX;
+        self.job = Job::None;
+        self.converged()
+    }
+
+    /// Ends the rounds at the root: its children start from here.
     pub(crate) fn finish_cuts(&mut self) -> Option<Progress> {
         self.job = Job::None;
         let hand = self.hand.take()?;
-        let (Some(point), Some(relaxation)) = (hand.point, &self.relaxation) else {
+        let (Some(point), Some(relaxation), Some(cutting)) =
+            (hand.point, &mut self.relaxation, &mut self.cutting)
+        else {
             self.note_cuts(None);
             return None;
         };
         let proved = relaxation.prove(&point.duals).map(|bound| signed(&self.model, bound));
         let proved = proved.as_ref().map_or(f64::NEG_INFINITY, float_below);
-        let basis = relaxation.simplex.basis();
         let root = self.tree.node_mut(NodeId::ROOT);
+        let gone = cutting.pool.slack(relaxation, &point.x, (root.rows as usize, true));
+        cutting.result.purged += u32::try_from(gone.len()).unwrap_or(u32::MAX);
         root.proved = if proved > root.proved { proved } else { root.proved };
+        cutting.basis = relaxation.drop_rows(&gone).is_ok().then(|| relaxation.simplex.basis());
         let choice = self.chooser.choose(self.settings.branching, &point.x);
         if self.acts.column(NodeId::ROOT).is_none() {
             self.plan = choice.or(self.plan);
@@ -186,7 +299,6 @@ impl Search {
             self.accept(solution, Purpose::Relaxation);
         }
         if let Some(cutting) = &mut self.cutting {
-            cutting.basis = Some(basis);
             cutting.point = Some((point.bound, point.x));
         }
         None

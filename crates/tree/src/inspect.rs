@@ -210,7 +210,7 @@ impl Search {
         match origin {
             RowOrigin::Written(row) => self.model.row_name(*row),
             RowOrigin::Cut(class, number) => {
-                format!("{} cut {}", crate::cutting::class_name(*class), number + 1)
+                format!("{} cut {}", class.word(), number + 1)
             }
             RowOrigin::Member { family, subset } => {
                 let of = self.model.subset_family(*family);

@@ -49,9 +49,10 @@
 //! costs are each checked in exact arithmetic before they are used, so that no proof rests on them
 //! unchecked.
 //!
-//! **General cuts** are added at the root, in rounds, where [`Cuts`] asks for them, after its relaxation
-//! is reported as it is meant. Each is derived in exact arithmetic from the exact rows, and a
-//! solution that breaks one ends the search with an error.
+//! **General cuts** are added where [`Cuts`] asks for them: at the root, in rounds, after its relaxation
+//! is reported as it is meant, and at nodes below it, from the bounds of the root alone, so that every
+//! cut holds in the whole tree. Each is derived in exact arithmetic from the exact rows, and its
+//! derivation is checked before it is used; a solution that breaks one ends the search with an error.
 //!
 //! **What is trusted.** A node is closed by floating-point arithmetic with the tolerances that
 //! each file names; each leaf is then checked in exact arithmetic and counted as checked or not.
@@ -74,6 +75,7 @@ mod hold;
 mod inspect;
 mod node;
 mod open;
+mod pool;
 mod probe;
 mod proofs;
 mod propagate;
@@ -94,13 +96,14 @@ mod work;
 
 pub use acts::{Act, Acted, Refusal};
 pub use conflict::{Certainty, Conflict, ConflictLimits, ConflictResult};
-pub use cutting::CutsResult;
+pub use cutting::{ByClass, CutsResult};
 pub use cycle::Cycle;
 pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
 pub use inspect::{NodeView, ViolatedSubset};
 pub use proving::standings;
 pub use root::{RootResult, Status};
 pub use search::{Progress, Search, Work};
+pub use separate::general::{Class, Classes};
 pub use settings::{Branching, Cuts, NodeWork, Selection, Settings};
 pub use summary::{NodeWorkCounts, Summary};
 

@@ -51,7 +51,8 @@ pub(crate) struct Relaxation {
     origins: Vec<RowOrigin>,
     added: Vec<NewRow>,
     written: Vec<bool>,
-    cuts: Vec<Row>,
+    /// Every general cut by number, those that were purged among them.
+    pub(crate) cuts: Vec<Row>,
     members: BTreeSet<(SubsetFamilyId, BTreeSet<LabelId>)>,
     exact: ExactRows,
     bounds: Vec<proof::Bounds>,
@@ -158,18 +159,49 @@ impl Relaxation {
         }
     }
 
-    /// Adds general cuts.
+    /// Adds general cuts by their numbers: new ones, or such as were there before.
     ///
     /// # Errors
     /// Where the kernel refuses them.
-    pub(crate) fn add_cuts(&mut self, cuts: Vec<GeneralCut>) -> Result<(), ProblemError> {
+    pub(crate) fn add_cuts(&mut self, cuts: &[(usize, GeneralCut)]) -> Result<(), ProblemError> {
         let mut additions = Vec::new();
-        for GeneralCut { class, row, .. } in cuts {
-            let origin = RowOrigin::Cut(class, self.cuts.len());
+        for (number, GeneralCut { class, row, .. }) in cuts {
+            let origin = RowOrigin::Cut(*class, *number);
             additions.push(Addition { origin, row: row.clone() });
-            self.cuts.push(row);
+            if *number == self.cuts.len() {
+                self.cuts.push(row.clone());
+            }
         }
         self.add(additions).map(|_| ())
+    }
+
+    /// Takes rows out that separation added and whose slacks are basic; later rows move up.
+    ///
+    /// # Errors
+    /// Where the kernel refuses it.
+    pub(crate) fn drop_rows(&mut self, places: &[usize]) -> Result<(), ProblemError> {
+        if places.is_empty() {
+            return Ok(());
+        }
+        let id = |&place: &usize| lp::RowId(u32::try_from(place).unwrap_or(u32::MAX));
+        self.simplex.delete_rows(&places.iter().map(id).collect::<Vec<_>>())?;
+        let written = self.origins.len() - self.added.len();
+        for &place in places.iter().rev() {
+            self.origins.remove(place);
+            self.added.remove(place - written);
+        }
+        self.exact = ExactRows::new(&self.model);
+        let left = written..self.origins.len();
+        let rows: Vec<Row> = left.filter_map(|index| self.exact_row(index)).collect();
+        rows.iter().for_each(|row| {
+            self.exact.add(row);
+        });
+        Ok(())
+    }
+
+    /// The model.
+    pub(crate) fn model(&self) -> &Model {
+        &self.model
     }
 
     /// The general cuts added so far.

@@ -145,6 +145,8 @@ pub(crate) struct Hand {
     pub(crate) tried: bool,
     /// Whether it is the root once more, for general cuts.
     pub(crate) cutting: bool,
+    /// Rounds of general cuts at a node below the root.
+    pub(crate) cut_rounds: u32,
     /// Whether columns were tried for branching, and the best of them.
     pub(crate) probed: bool,
     pub(crate) probed_choice: Option<Choice>,
@@ -164,6 +166,7 @@ impl Hand {
             exact: false,
             tried: false,
             cutting: false,
+            cut_rounds: 0,
             probed: false,
             probed_choice: None,
         }

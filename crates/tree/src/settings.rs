@@ -1,5 +1,7 @@
 //! The rules and limits of a search.
 
+use separate::general::Classes;
+
 /// Which column a node is branched on.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
 pub enum Branching {
@@ -56,22 +58,29 @@ impl Default for NodeWork {
     }
 }
 
-/// Which classes of general cuts are added at the root, after its relaxation is solved.
+/// Which classes of general cuts are added: at the root, after its relaxation is solved, in rounds
+/// until they stall, and at nodes below it where that is asked for.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
 pub struct Cuts {
-    /// Gomory's mixed-integer cuts.
-    pub gomory: bool,
-    /// Complemented mixed-integer rounding.
-    pub mir: bool,
-    /// Lifted covers.
-    pub cover: bool,
+    /// The classes.
+    pub classes: Classes,
+    /// Below the root: at nodes whose depth is a multiple of this; 0 is at none.
+    pub every: u32,
+    /// Rounds at such a node at most.
+    pub rounds: u32,
 }
 
 impl Cuts {
+    /// These classes at the root alone.
+    #[must_use]
+    pub fn at_root(classes: Classes) -> Self {
+        Self { classes, every: 0, rounds: 0 }
+    }
+
     /// Whether none is wanted.
     #[must_use]
     pub fn is_empty(self) -> bool {
-        self == Self::default()
+        self.classes.is_empty()
     }
 }
 
@@ -87,7 +96,7 @@ pub struct Settings {
     pub priority: Vec<String>,
     /// What is done at a node beside its relaxation.
     pub node_work: NodeWork,
-    /// General cuts at the root.
+    /// General cuts.
     pub cuts: Cuts,
     /// A value of the objective known to be reachable: nodes that cannot be better are
     /// closed, and solutions that are worse are not taken.

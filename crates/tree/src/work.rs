@@ -247,7 +247,7 @@ impl Search {
     }
 
     /// Nothing is violated any more (or the round limit is reached): look for solutions.
-    fn converged(&mut self) -> Option<Progress> {
+    pub(crate) fn converged(&mut self) -> Option<Progress> {
         let hand = self.hand.as_ref()?;
         if hand.cutting {
             return self.cut_round();
@@ -264,7 +264,10 @@ impl Search {
         if root {
             return self.decide();
         }
-        let x = point.x.clone();
+        if self.cuts_here() {
+            return self.start_cut_round();
+        }
+        let x = self.hand.as_ref()?.point.as_ref()?.x.clone();
         self.round(&x)
     }
 

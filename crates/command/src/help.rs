@@ -66,6 +66,7 @@ check failed.
 
 const RUN: &str = "\
 hullward run FILE… [--json] [--seconds S] [--rival LETTER] [--log FILE] [--cell N]
+              [--preset NAME]
 
 Runs every rival of the scenarios, one after another, then their studies, and
 prints tables.
@@ -77,7 +78,9 @@ prints tables.
   --rival LETTER  run only this rival
   --log FILE      save the log of its search; the scenario must have one rival, or
                   --rival must name it
-
+  --preset NAME   settings instead of the scenario's: bare (nothing that hides what
+                  is compared) or production (as a production solver would: general
+                  cuts, node work, reliability branching); limits stay
   --cell N        only cell N of its growth study, as JSON for hullward gather
 
 A rival that cannot be run does not keep the others from running.

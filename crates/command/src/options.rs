@@ -1,6 +1,7 @@
 //! The words of the command line.
 
 use record::file::nearest;
+use record::scenario::{PRESETS, Preset};
 
 use crate::help::Topic;
 
@@ -40,6 +41,8 @@ pub(crate) struct RunOptions {
     pub(crate) log: Option<String>,
     /// The only cell of its growth study to run.
     pub(crate) cell: Option<u32>,
+    /// The preset in place of the scenario's settings.
+    pub(crate) preset: Option<Preset>,
 }
 
 /// How `digest` is asked for.
@@ -159,8 +162,9 @@ fn run(words: &[String]) -> Result<RunOptions, String> {
             "--rival" => options.rival = Some(value(word, words.next())?.to_uppercase()),
             "--log" => options.log = Some(value(word, words.next())?.to_owned()),
             "--cell" => options.cell = Some(cell(value(word, words.next())?)?),
+            "--preset" => options.preset = Some(preset(value(word, words.next())?)?),
             other if is_option(other) => {
-                let known = ["--json", "--seconds", "--rival", "--log", "--cell"];
+                let known = ["--json", "--seconds", "--rival", "--log", "--cell", "--preset"];
                 return Err(unknown("option", other, &known));
             }
             file => options.files.push(file.to_owned()),
@@ -262,6 +266,11 @@ fn is_option(word: &str) -> bool {
 
 fn value<'w>(option: &str, word: Option<&'w String>) -> Result<&'w str, String> {
     word.map(String::as_str).ok_or_else(|| format!("{option} needs a value"))
+}
+
+fn preset(word: &str) -> Result<Preset, String> {
+    let found = PRESETS.iter().find(|(name, _)| *name == word).map(|(_, preset)| *preset);
+    found.ok_or_else(|| unknown("preset", word, &PRESETS.map(|(name, _)| name)))
 }
 
 fn seconds(word: &str) -> Result<f64, String> {

@@ -53,6 +53,9 @@ impl Job<'_> {
         if let Some(seconds) = self.options.seconds {
             scenario.run.seconds = seconds;
         }
+        if let Some(preset) = self.options.preset {
+            scenario.run = scenario.run.with(preset);
+        }
         let chosen = match self.chosen(&scenario) {
             Ok(chosen) => chosen,
             Err(message) => {

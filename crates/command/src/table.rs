@@ -50,6 +50,9 @@ pub(crate) fn print(
 ) -> Result<()> {
     let title = if scenario.title.is_empty() { "scenario" } else { &scenario.title };
     writeln!(out, "{title}")?;
+    if scenario.run.mode() != "bare" {
+        writeln!(out, "run {}", scenario.run.mode().replace("own", "with own"))?;
+    }
     let mut instance = "";
     let mut group = Vec::new();
     for one in results {

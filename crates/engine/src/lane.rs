@@ -118,7 +118,8 @@ impl Lane {
     }
 
     fn begin_search(&mut self, loaded: Loaded, outbox: &mut Outbox) -> Stage {
-        let Loaded { title, model, complaints, stops } = loaded;
+        let Loaded { title, model, mut complaints, stops } = loaded;
+        complaints.extend(map::complaints(&self.job.settings, &model));
         let settings = map::settings(&self.job.settings, self.job.seed);
         let mut search = Search::new(Rc::clone(&model), settings);
         let report = map::rival_report(&model, search.separators(), &title, complaints);

@@ -128,7 +128,8 @@ pub fn result(
         conflict: run.conflict.clone(),
         error: run.error.clone(),
         relaxation: given.is_some_and(is_relaxation),
-        left_out: left_out(scenario, given, run),
+        left_out: left_out(given, run),
+        preset: scenario.run.mode().to_owned(),
         ..RivalResult::default()
     };
     if run.stopped && result.root.is_none() {
@@ -163,9 +164,8 @@ pub fn instance_title(scenario: &Scenario, instance: usize) -> String {
 }
 
 /// What was not done of what the scenario asks for.
-fn left_out(scenario: &Scenario, rival: Option<&Rival>, run: &RivalRun) -> Vec<String> {
-    let mut sentences = crate::left_out(&scenario.run);
-    sentences.extend(run.refused.iter().cloned());
+fn left_out(rival: Option<&Rival>, run: &RivalRun) -> Vec<String> {
+    let mut sentences = run.refused.clone();
     if rival.is_some_and(|rival| is_relaxation(rival) && !rival.acts.is_empty()) {
         sentences.push("acts by hand were left out: a relaxation is not searched".to_owned());
     }

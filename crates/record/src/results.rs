@@ -48,6 +48,9 @@ pub struct RivalResult {
     /// Whether it is only a relaxation: bounded, not compared for its optimum.
     #[serde(default)]
     pub relaxation: bool,
+    /// Which settings ran: "bare", "as a production solver would" or "own settings".
+    #[serde(default)]
+    pub preset: String,
     /// Written rows, not domain lines.
     pub rows: u32,
     /// Columns.
@@ -201,31 +204,35 @@ pub struct SearchReport {
     /// What node work did.
     #[serde(default)]
     pub node_work: NodeWorkReport,
-    /// What general cuts gave at the root, where some were asked for.
+    /// What general cuts gave, where some were asked for.
     #[serde(default)]
     pub cuts: Option<CutsReport>,
 }
 
-/// What general cuts gave at the root.
-#[derive(Debug, Clone, Copy, PartialEq, Serialize, Deserialize)]
+/// What general cuts gave.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
 pub struct CutsReport {
-    /// The bound of the relaxation with them.
+    /// The bound of the root's relaxation with them.
     pub bound: Option<f64>,
-    /// Rounds that added some.
+    /// Rounds at the root that added some.
     pub rounds: u32,
-    /// How many of each class were added.
-    pub added: CutsAdded,
-}
-
-/// Cuts by class.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
-pub struct CutsAdded {
-    /// Gomory's mixed-integer cuts.
-    pub gomory: u32,
-    /// Complemented mixed-integer rounding.
-    pub mir: u32,
-    /// Lifted covers.
-    pub cover: u32,
+    /// How many of each class were added, at the root and below.
+    pub added: BTreeMap<String, u32>,
+    /// How many of each class are in the relaxation.
+    #[serde(default)]
+    pub kept: BTreeMap<String, u32>,
+    /// What each class moved the bound of the root by.
+    #[serde(default)]
+    pub moved: BTreeMap<String, f64>,
+    /// How many were added below the root.
+    #[serde(default)]
+    pub below: u32,
+    /// How many were purged from the relaxation.
+    #[serde(default)]
+    pub purged: u32,
+    /// How many of those came back.
+    #[serde(default)]
+    pub returned: u32,
 }
 
 /// What node work did; all 0 where none was asked for.

@@ -196,6 +196,92 @@ pub struct Run {
     pub node_work: Option<Vec<String>>,
     /// General cuts by class, and "on demand"; `None` is the default: families on demand only.
     pub cuts: Option<Vec<String>>,
+    /// Below the root: general cuts at nodes whose depth is a multiple of this; 0 is at none.
+    pub cut_every: u32,
+    /// Rounds of general cuts at such a node at most.
+    pub cut_rounds: u32,
+    /// What the settings start from; those beside it are what it does not set, or were changed.
+    pub preset: Preset,
+}
+
+/// The classes of general cuts, as a scenario names them.
+pub const CUT_CLASSES: [&str; 11] = [
+    "gomory",
+    "mir",
+    "cover",
+    "clique",
+    "odd hole",
+    "zero-half",
+    "flow cover",
+    "lot sizing",
+    "blossom",
+    "odd set",
+    "round trip",
+];
+
+/// Settings that go together.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub enum Preset {
+    /// Nothing that hides what is compared: no cuts, no propagation, no search for solutions.
+    #[default]
+    Bare,
+    /// As a production solver would: everything there is.
+    Production,
+}
+
+/// The presets as a scenario names them.
+pub const PRESETS: [(&str, Preset); 2] =
+    [("bare", Preset::Bare), ("production", Preset::Production)];
+
+impl Run {
+    /// The settings of a preset.
+    #[must_use]
+    pub fn of(preset: Preset) -> Self {
+        let usual = Self::default();
+        let words = |words: &[&str]| Some(words.iter().map(|&word| word.to_owned()).collect());
+        match preset {
+            Preset::Bare => usual,
+            Preset::Production => Self {
+                branching: BranchingRule::Reliability,
+                selection: Selection::BestEstimate,
+                node_work: words(&["propagation", "reduced costs", "objective step"]),
+                cuts: words(&CUT_CLASSES),
+                cut_every: 4,
+                cut_rounds: 1,
+                preset,
+                ..usual
+            },
+        }
+    }
+
+    /// These settings with those that a preset sets; limits, the cut-off and priorities stay.
+    #[must_use]
+    pub fn with(&self, preset: Preset) -> Self {
+        Self {
+            search: self.search,
+            nodes: self.nodes,
+            iterations: self.iterations,
+            seconds: self.seconds,
+            best_known: self.best_known,
+            priority: self.priority.clone(),
+            ..Self::of(preset)
+        }
+    }
+
+    /// Which preset these settings are, in words. Rules for branching and the next node are free in
+    /// the bare one.
+    #[must_use]
+    pub fn mode(&self) -> &'static str {
+        let mut like = self.with(self.preset);
+        if self.preset == Preset::Bare {
+            (like.branching, like.selection) = (self.branching, self.selection);
+        }
+        match self.preset {
+            _ if like != *self => "own settings",
+            Preset::Bare => "bare",
+            Preset::Production => "as a production solver would",
+        }
+    }
 }
 
 impl Default for Run {
@@ -211,6 +297,9 @@ impl Default for Run {
             priority: Vec::new(),
             node_work: None,
             cuts: None,
+            cut_every: 0,
+            cut_rounds: 0,
+            preset: Preset::Bare,
         }
     }
 }
@@ -271,7 +360,17 @@ pub enum Field {
 
 #[cfg(test)]
 mod tests {
-    use super::letter;
+    use super::{BranchingRule, Preset, Run, letter};
+
+    #[test]
+    fn settings_say_which_preset_they_are() {
+        let bare = Run { branching: BranchingRule::Strong, nodes: 5, ..Run::default() };
+        assert_eq!(bare.mode(), "bare");
+        let full = bare.with(Preset::Production);
+        assert_eq!((full.nodes, full.mode()), (5, "as a production solver would"));
+        assert_eq!(Run { cut_every: 9, ..full }.mode(), "own settings");
+        assert_eq!(Run { cuts: Some(vec!["mir".to_owned()]), ..bare }.mode(), "own settings");
+    }
 
     #[test]
     fn letters_go_on_after_z() {

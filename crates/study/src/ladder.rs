@@ -5,7 +5,7 @@ use std::rc::Rc;
 
 use model::Model;
 use record::study::{Ladder, RivalLadder, Rung};
-use tree::{Cuts, Settings, Status};
+use tree::{Class, Classes, Cuts, Settings, Status};
 
 use crate::desk::{Desk, Solved};
 use crate::plan::Plan;
@@ -68,10 +68,15 @@ async fn climb(desk: &Desk, subject: &Subject, plan: &Plan) -> (RivalLadder, Opt
     say("its coefficients tightened");
     let (tightened, note) = tightened(desk, propagated.as_deref().unwrap_or(model)).await;
     rungs.push(step("coefficients tightened", desk, tightened.as_ref(), note).await);
-    for (name, cuts) in classes() {
+    for (name, classes) in classes() {
         say(name);
+        let cuts = Cuts::at_root(classes);
         let settings = Settings { cuts, node_limit: Some(1), ..Settings::default() };
-        rungs.push(cut_rung(name, &desk.solve(model, settings).await));
+        let solved = desk.solve(model, settings).await;
+        let some = solved.cuts.is_some_and(|(_, added)| added > 0);
+        if some || USUAL.contains(&name) {
+            rungs.push(cut_rung(name, &solved));
+        }
     }
     if subject.relaxation {
         return (finished(subject, rungs), None);
@@ -87,15 +92,26 @@ fn finished(subject: &Subject, rungs: Vec<Rung>) -> RivalLadder {
     RivalLadder { rival: subject.letter.clone(), title: subject.title.clone(), rungs }
 }
 
+/// The classes that are always told of; the others where they added something.
+const USUAL: [&str; 4] = ["Gomory cuts", "mixed-integer rounding", "lifted covers", "all cuts"];
+
 /// Each class of general cuts alone, then all of them.
-fn classes() -> [(&'static str, Cuts); 4] {
-    let none = Cuts::default;
-    [
-        ("Gomory cuts", Cuts { gomory: true, ..none() }),
-        ("mixed-integer rounding", Cuts { mir: true, ..none() }),
-        ("lifted covers", Cuts { cover: true, ..none() }),
-        ("all cuts", Cuts { gomory: true, mir: true, cover: true }),
-    ]
+fn classes() -> Vec<(&'static str, Classes)> {
+    let name = |class| match class {
+        Class::Gomory => "Gomory cuts",
+        Class::Mir => "mixed-integer rounding",
+        Class::Cover => "lifted covers",
+        Class::Clique => "cliques",
+        Class::OddHole => "odd holes",
+        Class::ZeroHalf => "zero-half cuts",
+        Class::FlowCover => "flow covers",
+        Class::LotSizing => "(l,S) of lot sizing",
+        Class::Blossom => "blossoms",
+        Class::OddSet => "odd sets",
+        Class::RoundTrip => "cuts of round trips",
+    };
+    let alone = Class::ALL.map(|(class, _)| (name(class), [class].into_iter().collect()));
+    alone.into_iter().chain([("all cuts", Classes::all())]).collect()
 }
 
 fn rung(step: &str, solved: &Solved) -> Rung {

@@ -1,7 +1,7 @@
 //! Acts by hand in the document: what a person did to a rival's search. They belong to one tree: a
 //! change of what that tree is made of forgets them.
 
-use record::scenario::{Act, ActKind, BranchingRule, Rival, Run, Selection};
+use record::scenario::{Act, ActKind, BranchingRule, Preset, Rival, Run, Selection};
 use report::number::of;
 
 use crate::state::document::Document;
@@ -23,6 +23,8 @@ pub(crate) enum Steer {
     Rule(BranchingRule),
     /// Rivals are searched by another rule for the next node.
     Next(Selection),
+    /// Rivals are searched with the settings of a preset.
+    Preset(Preset),
 }
 
 impl Steer {
@@ -35,6 +37,7 @@ impl Steer {
             Self::GoOn(_) => "stop that was taken back",
             Self::Rule(_) => "branching rule",
             Self::Next(_) => "rule for the next node",
+            Self::Preset(_) => "settings",
         }
     }
 }
@@ -53,6 +56,10 @@ impl Document {
             Steer::GoOn(id) => self.acts(id, |acts| acts.retain(|act| act.what != ActKind::Stop)),
             Steer::Rule(branching) => {
                 self.run = Shared::new(Run { branching, ..(*self.run).clone() });
+                self.forget_acts();
+            }
+            Steer::Preset(preset) => {
+                self.run = Shared::new(self.run.with(preset));
                 self.forget_acts();
             }
             Steer::Next(selection) => {

@@ -157,7 +157,7 @@ fn for_all(document: &Document, board: &Board, hands: &Hands) -> Html {
     };
     html! {
         <div class="acts" role="group" aria-label="All rivals">
-            { rules(document.run.branching, document.run.selection, hands) }
+            { rules(&document.run, hands) }
             <button type="button" data-testid="run-all" onclick={run}>{ "Run all" }</button>
             <button type="button" data-testid="stop-all" onclick={stop}>{ "Stop all" }</button>
         </div>

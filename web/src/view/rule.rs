@@ -1,6 +1,6 @@
 //! The rules of all rivals: which variable a node is branched on, and which open node comes next.
 
-use record::scenario::{BranchingRule, Selection};
+use record::scenario::{BranchingRule, Preset, Run, Selection};
 use web_sys::HtmlSelectElement;
 use yew::prelude::*;
 
@@ -24,12 +24,19 @@ const NEXT: [(Selection, &str); 3] = [
     (Selection::BestEstimate, "best estimate"),
 ];
 
-/// Both choices.
-pub(crate) fn rules(branching: BranchingRule, selection: Selection, hands: &Hands) -> Html {
+/// The settings that go together.
+const PRESETS: [(Preset, &str); 2] =
+    [(Preset::Bare, "bare"), (Preset::Production, "as a production solver would")];
+
+/// The choices of a run.
+pub(crate) fn rules(run: &Run, hands: &Hands) -> Html {
+    let own = PRESETS.iter().all(|(_, words)| *words != run.mode());
+    let settings = if own { "settings, changed" } else { "settings" };
     html! {
         <>
-            { choice(("branching", "rule"), &RULES, branching, Steer::Rule, hands) }
-            { choice(("next node", "next"), &NEXT, selection, Steer::Next, hands) }
+            { choice((settings, "preset"), &PRESETS, run.preset, Steer::Preset, hands) }
+            { choice(("branching", "rule"), &RULES, run.branching, Steer::Rule, hands) }
+            { choice(("next node", "next"), &NEXT, run.selection, Steer::Next, hands) }
         </>
     }
 }

@@ -287,11 +287,39 @@ fn what_this_version_leaves_out_is_said() {
     let rest = "[run]\nbranching = \"reliability\"\nselection = \"best estimate\"\ncuts = [\"flow cover\"]\n[[study]]\nkind = \"symmetry\"\n";
     let output = hullward(&["run", "-", "--json"], &two_rivals(rest));
     assert_eq!(status(&output), 2, "{}", err(&output));
-    let left_out = &lines(&output)[0]["left_out"];
-    assert_eq!(left_out.as_array().map(Vec::len), Some(1), "{left_out}");
+    let line = &lines(&output)[0];
+    assert!(line["left_out"].is_null() && line["preset"] == "own settings", "{line}");
     let said = err(&output);
     assert!(said.starts_with("-: the study symmetry was left out: there is no study"), "{said}");
     assert_eq!(lines(&output).last().map(|line| line["study"].clone()), Some("symmetry".into()));
+}
+
+/// The preset of the file, and that of the command line instead; what each class of cuts did.
+#[test]
+fn a_preset_is_run_and_said() {
+    let bare = hullward(&["run", "-", "--json"], &two_rivals(""));
+    let line = &lines(&bare)[0];
+    assert!(line["preset"] == "bare" && line["search"]["cuts"].is_null(), "{line}");
+    let text = two_rivals("[run]\npreset = \"production\"\n");
+    let by_file = hullward(&["run", "-", "--json"], &text);
+    let by_flag = hullward(&["run", "-", "--json", "--preset", "production"], &two_rivals(""));
+    let (file, flag) = (&lines(&by_file)[0], &lines(&by_flag)[0]);
+    assert_eq!(file["preset"], "as a production solver would");
+    assert_eq!((&file["preset"], &file["search"]), (&flag["preset"], &flag["search"]));
+    assert_eq!(file["search"]["incumbent"], line["search"]["incumbent"]);
+    let table = hullward(&["run", "-", "--preset", "production"], &two_rivals(""));
+    assert!(out(&table).contains("run as a production solver would\n"), "{}", out(&table));
+    let wrong = hullward(&["run", "-", "--preset", "productoin"], &two_rivals(""));
+    assert!(err(&wrong).contains("did you mean production?"), "{}", err(&wrong));
+}
+
+/// A priority that fits no variable is told with the variables there are.
+#[test]
+fn a_priority_without_a_variable_is_told() {
+    let output = hullward(&["run", "-"], &two_rivals("[run]\npriority = [\"xx\"]\n"));
+    let said = err(&output);
+    assert!(said.contains("warning: `priority` in [run] names xx"), "{said}");
+    assert!(said.contains("did you mean x? its variables: x"), "{said}");
 }
 
 #[test]

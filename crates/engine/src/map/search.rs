@@ -1,9 +1,11 @@
 //! What a search gave, so far or at its end.
 
+use std::collections::BTreeMap;
+
 use model::{ColumnId, Model};
 use record::results::{
-    ConflictLevel, ConflictReport, CutsAdded, CutsReport, NodeWorkReport, SearchReport,
-    SolutionEntry, Status, WAITS,
+    ConflictLevel, ConflictReport, CutsReport, NodeWorkReport, SearchReport, SolutionEntry, Status,
+    WAITS,
 };
 
 use super::{finite, status, tidy};
@@ -38,12 +40,21 @@ pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchRepor
 }
 
 fn cuts_report(cuts: tree::CutsResult) -> CutsReport {
-    let [gomory, mir, cover] = cuts.added;
     CutsReport {
         bound: cuts.bound.and_then(finite),
         rounds: cuts.rounds,
-        added: CutsAdded { gomory, mir, cover },
+        added: by_class(cuts.added),
+        kept: by_class(cuts.kept),
+        moved: by_class(cuts.moved.map(tidy)),
+        below: cuts.below,
+        purged: cuts.purged,
+        returned: cuts.returned,
     }
+}
+
+fn by_class<T>(values: tree::ByClass<T>) -> BTreeMap<String, T> {
+    let words = tree::Class::ALL.iter().map(|(_, word)| (*word).to_owned());
+    words.zip(values).collect()
 }
 
 /// Why a search stands still that has not ended.

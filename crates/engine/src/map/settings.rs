@@ -1,9 +1,10 @@
 //! Rules and limits of a run.
 
+use record::file::nearest;
+use record::message::Complaint;
 use record::scenario::{BranchingRule, Run, Selection};
 
-/// The search's settings; what this version does not have is replaced as
-/// [`crate::left_out()`] says.
+/// The search's settings.
 pub(crate) fn settings(run: &Run, seed: u64) -> tree::Settings {
     tree::Settings {
         branching: match run.branching {
@@ -40,8 +41,65 @@ fn node_work(run: &Run) -> tree::NodeWork {
     }
 }
 
-/// General cuts: those classes of the scenario that this version has.
+/// General cuts by the words of the scenario.
 fn cuts(run: &Run) -> tree::Cuts {
     let has = |wanted: &str| run.cuts.iter().flatten().any(|class| class == wanted);
-    tree::Cuts { gomory: has("gomory"), mir: has("mir"), cover: has("cover") }
+    let classes = tree::Class::ALL.into_iter().filter(|(_, word)| has(word));
+    tree::Cuts {
+        classes: classes.map(|(class, _)| class).collect(),
+        every: run.cut_every,
+        rounds: run.cut_rounds,
+    }
+}
+
+/// What is to be said of the run's settings for a rival: variables that it does not have.
+pub(crate) fn complaints(run: &Run, model: &model::Model) -> Vec<Complaint> {
+    let known: Vec<&str> = model.variables().iter().map(|v| v.name.as_str()).collect();
+    let unknown = run.priority.iter().filter(|name| !known.contains(&name.as_str()));
+    let complaint = |name: &String| {
+        let near = nearest(name, &known).map(|near| format!("did you mean {near}? "));
+        Complaint {
+            error: false,
+            code: "run.priority".to_owned(),
+            line: 1,
+            column: 1,
+            start: 0,
+            end: 0,
+            message: format!(
+                "`priority` in [run] names {name}, which is no variable of this rival"
+            ),
+            mend: format!("{}its variables: {}", near.unwrap_or_default(), known.join(", ")),
+        }
+    };
+    unknown.map(complaint).collect()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use record::scenario::{CUT_CLASSES, Preset};
+
+    #[test]
+    fn scenario_and_search_have_the_same_classes_of_cuts() {
+        assert_eq!(tree::Class::ALL.map(|(_, word)| word), CUT_CLASSES);
+        let all = settings(&Run::of(Preset::Production), 0);
+        assert_eq!(all.cuts.classes, tree::Classes::all());
+        assert!(settings(&Run::default(), 0).cuts.is_empty());
+    }
+
+    #[test]
+    fn a_priority_without_a_variable_is_told() {
+        let mut builder = model::ModelBuilder::new("m", model::Sense::Minimise);
+        builder.variable("open", false);
+        let model = builder.build();
+        let run = |names: &[&str]| Run {
+            priority: names.iter().map(|&name| name.to_owned()).collect(),
+            ..Run::default()
+        };
+        assert!(complaints(&run(&["open"]), &model).is_empty());
+        let told = complaints(&run(&["opne", "open"]), &model);
+        assert_eq!(told.len(), 1);
+        assert!(told[0].message.contains("names opne"), "{told:?}");
+        assert!(told[0].mend.starts_with("did you mean open?"), "{told:?}");
+    }
 }

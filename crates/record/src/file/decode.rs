@@ -9,8 +9,8 @@ use super::Origin;
 use super::fields::{Findings, Table};
 use crate::place::Finding;
 use crate::scenario::{
-    Act, ActKind, BranchingRule, FamilyState, InstanceText, MOST_ACTS, MOST_INSTANCES, MOST_RIVALS,
-    Rival, Role, Run, Scenario, Selection, Study, reader_and_part,
+    Act, ActKind, BranchingRule, CUT_CLASSES, FamilyState, InstanceText, MOST_ACTS, MOST_INSTANCES,
+    MOST_RIVALS, PRESETS, Rival, Role, Run, Scenario, Selection, Study, reader_and_part,
 };
 
 const SCENARIO: [&str; 10] =
@@ -18,7 +18,7 @@ const SCENARIO: [&str; 10] =
 const INSTANCE: [&str; 4] = ["reader", "title", "text", "bind"];
 const RIVAL: [&str; 7] = ["title", "from", "text", "mps", "role", "families", "act"];
 const ACT: [&str; 4] = ["after", "do", "node", "on"];
-const RUN: [&str; 10] = [
+const RUN: [&str; 13] = [
     "search",
     "nodes",
     "iterations",
@@ -29,18 +29,12 @@ const RUN: [&str; 10] = [
     "priority",
     "node_work",
     "cuts",
+    "cut_every",
+    "cut_rounds",
+    "preset",
 ];
 const NODE_WORK: [(&str, ()); 3] =
     [("propagation", ()), ("reduced costs", ()), ("objective step", ())];
-const CUTS: [(&str, ()); 7] = [
-    ("on demand", ()),
-    ("gomory", ()),
-    ("mir", ()),
-    ("cover", ()),
-    ("flow cover", ()),
-    ("zero-half", ()),
-    ("clique", ()),
-];
 const STUDIES: [(&str, ()); 10] = [
     ("ladder", ()),
     ("families", ()),
@@ -296,7 +290,8 @@ impl Decoder<'_> {
     fn run(&mut self, table: &Table<'_>) -> Run {
         let found = &mut self.findings;
         found.unknown_keys(table, "run", &RUN);
-        let usual = Run::default();
+        let preset = found.choice(table, "preset", &PRESETS).unwrap_or_default();
+        let usual = Run::of(preset);
         let seconds = found.number(table, "seconds").unwrap_or(usual.seconds);
         if seconds < 0.0 {
             let span = table.get("seconds").map(Spanned::span).unwrap_or_default();
@@ -305,8 +300,10 @@ impl Decoder<'_> {
         }
         let cuts = found.texts(table, "cuts");
         let span = table.get("cuts").map(Spanned::span).unwrap_or_default();
+        let classes: Vec<(&str, ())> =
+            ["on demand"].into_iter().chain(CUT_CLASSES).map(|class| (class, ())).collect();
         for cut in cuts.iter().flatten() {
-            found.word(cut, span.clone(), "cuts", &CUTS);
+            found.word(cut, span.clone(), "cuts", &classes);
         }
         let node_work = found.texts(table, "node_work");
         let span = table.get("node_work").map(Spanned::span).unwrap_or_default();
@@ -319,11 +316,14 @@ impl Decoder<'_> {
             iterations: found.whole(table, "iterations").unwrap_or(usual.iterations),
             seconds,
             best_known: found.number(table, "best_known"),
-            branching: found.choice(table, "branching", &BRANCHING).unwrap_or_default(),
-            selection: found.choice(table, "selection", &SELECTION).unwrap_or_default(),
+            branching: found.choice(table, "branching", &BRANCHING).unwrap_or(usual.branching),
+            selection: found.choice(table, "selection", &SELECTION).unwrap_or(usual.selection),
             priority: found.texts(table, "priority").unwrap_or_default(),
-            node_work,
-            cuts,
+            node_work: node_work.or(usual.node_work),
+            cuts: cuts.or(usual.cuts),
+            cut_every: found.whole(table, "cut_every").unwrap_or(usual.cut_every),
+            cut_rounds: found.whole(table, "cut_rounds").unwrap_or(usual.cut_rounds),
+            preset,
         }
     }
 

@@ -5,7 +5,9 @@ use std::collections::BTreeMap;
 use std::fmt::Write;
 
 use super::decode::{ACTS, BRANCHING, FAMILY_STATES, SELECTION};
-use crate::scenario::{Act, Field, InstanceText, Rival, Role, Run, Scenario, Study};
+use crate::scenario::{
+    Act, Field, InstanceText, PRESETS, Preset, Rival, Role, Run, Scenario, Study,
+};
 
 /// The scenario file: [`super::parse`] of it gives the scenario back.
 #[must_use]
@@ -104,11 +106,14 @@ impl Printer {
     }
 
     fn run(&mut self, run: &Run) {
-        let usual = Run::default();
-        if *run == usual {
+        if *run == Run::default() {
             return;
         }
+        let usual = Run::of(run.preset);
         self.header("[run]");
+        if run.preset != Preset::default() {
+            self.text("preset", word(&PRESETS, run.preset));
+        }
         if run.search != usual.search {
             self.pair("search", &run.search.to_string());
         }
@@ -133,11 +138,17 @@ impl Printer {
         if !run.priority.is_empty() {
             self.pair("priority", &list(&run.priority));
         }
-        if let Some(work) = &run.node_work {
+        if let Some(work) = run.node_work.as_ref().filter(|_| run.node_work != usual.node_work) {
             self.pair("node_work", &list(work));
         }
-        if let Some(cuts) = &run.cuts {
+        if let Some(cuts) = run.cuts.as_ref().filter(|_| run.cuts != usual.cuts) {
             self.pair("cuts", &list(cuts));
+        }
+        if run.cut_every != usual.cut_every {
+            self.pair("cut_every", &run.cut_every.to_string());
+        }
+        if run.cut_rounds != usual.cut_rounds {
+            self.pair("cut_rounds", &run.cut_rounds.to_string());
         }
     }
 

@@ -8,8 +8,8 @@ use proptest::prelude::*;
 
 use super::*;
 use crate::scenario::{
-    Act, ActKind, BranchingRule, FamilyState, Field, InstanceText, MOST_ACTS, MOST_RIVALS, Rival,
-    Role, Run, Study,
+    Act, ActKind, BranchingRule, FamilyState, Field, InstanceText, MOST_ACTS, MOST_RIVALS, Preset,
+    Rival, Role, Run, Study,
 };
 
 /// The example of the file's description, every field of version 1 in it.
@@ -233,17 +233,24 @@ fn run() -> impl Strategy<Value = Run> {
     let lists = (cuts, option::of(vec(prop::sample::select(works), 0..3)), vec("\\PC{1,5}", 0..3));
     let limits = (any::<u32>(), any::<u64>(), 0.0..1e6);
     (any::<bool>(), limits, option::of(finite()), branching, selection, lists).prop_map(
-        |(search, (nodes, iterations, seconds), best_known, branching, selection, lists)| Run {
-            search,
-            nodes,
-            iterations,
-            seconds,
-            best_known,
-            branching,
-            selection,
-            priority: lists.2,
-            node_work: lists.1,
-            cuts: lists.0,
+        |(search, (nodes, iterations, seconds), best_known, branching, selection, lists)| {
+            let preset = if search { Preset::Bare } else { Preset::Production };
+            let of = Run::of(preset);
+            Run {
+                search,
+                nodes,
+                iterations,
+                seconds,
+                best_known,
+                branching,
+                selection,
+                priority: lists.2,
+                node_work: lists.1.or(of.node_work),
+                cuts: lists.0.or(of.cuts),
+                cut_every: nodes % 7,
+                cut_rounds: nodes % 3,
+                preset,
+            }
         },
     )
 }

@@ -9,6 +9,7 @@ cargo xtask serve [--port P]               serve web/dist as it is
 cargo xtask test [--only PART]...          what CI runs; PART: native, counts, page, browser, reference
 cargo xtask counts [--write]               instructions of fixed solves against the list of them
 cargo xtask bench lp [--quick] ...         speed of the linear programs; `bench help` says more
+cargo xtask bench tree [--quick] ...       speed of searches beside microlp and HiGHS
 cargo xtask bench wasm                     the built page's engine under Node against the native one
 
 --port P      the port on 127.0.0.1 (8080; 0 takes any free one)

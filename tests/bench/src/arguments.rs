@@ -15,6 +15,9 @@ cargo xtask bench lp [PART]... [options]
     growth        time over size
     instructions  counts by callgrind; only when it is named
 
+cargo xtask bench tree [options]
+    searches: bare mode beside microlp, as a production solver would beside HiGHS
+
 cargo xtask bench wasm
     the built page's engine under Node beside the native one
 
@@ -41,8 +44,10 @@ pub(crate) enum Part {
     Help,
     /// Make ready, and solve once when somebody is named.
     Once { problem: String, seed: u64, who: Option<Solver> },
-    /// Measure.
+    /// Measure linear programs.
     Tables(Tables),
+    /// Measure searches.
+    Trees,
 }
 
 /// What was asked for.
@@ -58,6 +63,11 @@ impl Arguments {
     /// The seeds as they are given on the command line.
     pub(crate) fn words(&self) -> String {
         self.seeds.iter().map(ToString::to_string).collect::<Vec<_>>().join(",")
+    }
+
+    /// The fresh seeds.
+    pub(crate) fn seeds(&self) -> &[u64] {
+        &self.seeds
     }
 
     /// Whether a problem is to be measured.
@@ -93,8 +103,9 @@ pub(crate) fn parse(words: &[String]) -> Result<Arguments, String> {
         seeds: fresh_seeds(),
         filter: String::new(),
     };
-    match words.next() {
-        Some("lp") => {}
+    let what = words.next();
+    match what {
+        Some("lp" | "tree") => {}
         Some("once") => {
             arguments.part = once(&mut words)?;
             return Ok(arguments);
@@ -117,6 +128,13 @@ pub(crate) fn parse(words: &[String]) -> Result<Arguments, String> {
             "--match" => arguments.filter = words.next().unwrap_or_default().to_owned(),
             other => return Err(format!("{other:?} is not understood")),
         }
+    }
+    if what == Some("tree") {
+        if tables != Tables::default() {
+            return Err("bench tree has no parts".to_owned());
+        }
+        arguments.part = Part::Trees;
+        return Ok(arguments);
     }
     if tables == Tables::default() {
         tables = Tables {

@@ -5,6 +5,26 @@ use highs::{Col, Model, RowProblem, Sense};
 use lp::Basis;
 use std::fmt::Write as _;
 
+/// A model with so many leading columns whole, and every option as it comes but for one thread.
+pub(crate) fn whole(lp: &Shadow, whole: usize) -> Model {
+    let mut problem = RowProblem::default();
+    let columns: Vec<Col> = (0..lp.cost.len())
+        .map(|j| {
+            let bounds = lp.lower[j]..=lp.upper[j];
+            problem.add_column_with_integrality(lp.cost[j], bounds, j < whole)
+        })
+        .collect();
+    for (entries, lower, upper) in &lp.rows {
+        let entries: Vec<(Col, f64)> =
+            entries.iter().map(|&(j, value)| (columns[j], value)).collect();
+        problem.add_row(*lower..=*upper, entries);
+    }
+    let mut model = problem.optimise(Sense::Minimise);
+    model.set_option("threads", 1);
+    model.set_option("parallel", "off");
+    model
+}
+
 /// A model with its columns.
 pub(crate) fn model(lp: &Shadow) -> (Model, Vec<Col>) {
     let mut problem = RowProblem::default();

@@ -1,4 +1,4 @@
-//! Speed of the linear programs beside HiGHS and microlp, by one protocol.
+//! Speed of linear programs and searches beside HiGHS and microlp, by one protocol.
 //!
 //! Everyone solves the same problems in a random interleaved order on the thread's CPU time; a
 //! sample is a loop of at least 50 ms; figures are ratios of medians, of a class their geometric
@@ -25,6 +25,7 @@ mod solvers;
 mod statistics;
 mod subtours;
 mod table;
+mod trees;
 
 #[path = "../../../crates/lp/tests/suite/instances.rs"]
 mod instances;
@@ -53,6 +54,7 @@ fn carry_out(arguments: &Arguments) {
     match &arguments.part {
         Part::Help => println!("{}", arguments::USAGE),
         Part::Once { problem, seed, who } => instructions::once(problem, *seed, *who),
+        Part::Trees => trees::run(arguments),
         Part::Tables(parts) => {
             if !arguments.words().is_empty() {
                 println!("seeds beside 1, for another run: --seeds {}\n", arguments.words());

@@ -116,7 +116,7 @@ fn highs(lp: &Shadow, count: usize, presolve: &str) -> Timed {
 }
 
 fn microlp(lp: &Shadow, count: usize) -> Timed {
-    let problem = microlp_problem(lp);
+    let problem = microlp_problem(lp, 0);
     let mut options = microlp::SolveOptions::default();
     options.presolve = false;
     let (solved, seconds) = clock::timed(|| {
@@ -128,10 +128,18 @@ fn microlp(lp: &Shadow, count: usize) -> Timed {
     ((last.stats().lp_iterations, last.objective()), seconds)
 }
 
-fn microlp_problem(lp: &Shadow) -> microlp::Problem {
+/// The problem for microlp, so many leading columns whole.
+pub(crate) fn microlp_problem(lp: &Shadow, whole: usize) -> microlp::Problem {
     let mut problem = microlp::Problem::new(microlp::OptimizationDirection::Minimize);
     let columns: Vec<microlp::Variable> = (0..lp.cost.len())
-        .map(|j| problem.add_var(lp.cost[j], (lp.lower[j], lp.upper[j])))
+        .map(|j| {
+            if j < whole {
+                let bounds = (lp.lower[j] as i32, lp.upper[j] as i32);
+                problem.add_integer_var(lp.cost[j], bounds)
+            } else {
+                problem.add_var(lp.cost[j], (lp.lower[j], lp.upper[j]))
+            }
+        })
         .collect();
     for (entries, lower, upper) in &lp.rows {
         let terms: Vec<_> = entries.iter().map(|&(j, value)| (columns[j], value)).collect();

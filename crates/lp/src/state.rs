@@ -8,7 +8,7 @@
 use crate::basis::Status;
 use crate::care::{ATTEMPTS, Care};
 use crate::dual::Breakpoint;
-use crate::lu::{BasisColumns, Factor};
+use crate::lu::{Factor, Workspace};
 use crate::problem::Problem;
 use crate::random::{detoured, half_to_one};
 use crate::sparse::{Matrix, Partition, SparseVector, largest};
@@ -85,6 +85,7 @@ pub(crate) struct Core {
     /// Reference weight by variable (primal).
     pub(crate) devex: Vec<f64>,
     pub(crate) factor: Factor,
+    pub(crate) factoring: Workspace,
     /// True while the factors belong to the sorted head and carry no update.
     pub(crate) canonical: bool,
     pub(crate) care: Care,
@@ -128,6 +129,7 @@ impl Core {
             is_attractive: Vec::new(),
             devex: Vec::new(),
             factor: Factor::default(),
+            factoring: Workspace::default(),
             canonical: false,
             care: ATTEMPTS[0],
             room: Room::default(),
@@ -246,16 +248,14 @@ impl Core {
     }
 
     fn refactor_with(&mut self, threshold: f64) -> u32 {
-        let mut start = Vec::with_capacity(self.head.len() + 1);
-        let mut entry = Vec::new();
-        start.push(0);
+        let columns = &mut self.factoring.columns;
+        columns.clear();
         for &j in &self.head {
-            for_column(&self.matrix, j, |row, value| entry.push((row, value)));
-            start.push(entry.len());
+            for_column(&self.matrix, j, |row, value| columns.push(row, value));
+            columns.close_column();
         }
-        let (factor, replaced, ticks) =
-            Factor::factorise(&BasisColumns::new(start, entry), threshold, self.care.singular);
-        self.factor = factor;
+        let (replaced, ticks) =
+            self.factor.factorise(&mut self.factoring, threshold, self.care.singular);
         self.ticks += ticks;
         self.refactors += 1;
         for r in &replaced {

@@ -4,7 +4,7 @@
 pub(crate) const NONE: u32 = u32::MAX;
 
 /// Items 0..size, each in at most one list; list k holds the items of count k.
-#[derive(Debug)]
+#[derive(Clone, Debug, Default)]
 pub(crate) struct Buckets {
     first: Vec<u32>,
     next: Vec<u32>,
@@ -13,13 +13,13 @@ pub(crate) struct Buckets {
 }
 
 impl Buckets {
-    /// Empty lists for `size` items with counts up to `size`.
-    pub(crate) fn new(size: usize) -> Self {
-        Self {
-            first: vec![NONE; size + 1],
-            next: vec![NONE; size],
-            previous: vec![NONE; size],
-            count: vec![NONE; size],
+    /// Makes the lists empty, for `size` items with counts up to `size`.
+    pub(crate) fn reset(&mut self, size: usize) {
+        self.first.clear();
+        self.first.resize(size + 1, NONE);
+        for list in [&mut self.next, &mut self.previous, &mut self.count] {
+            list.clear();
+            list.resize(size, NONE);
         }
     }
 

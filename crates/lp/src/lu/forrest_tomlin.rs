@@ -33,6 +33,14 @@ pub(crate) struct RowFile {
 }
 
 impl RowFile {
+    /// Forgets them all.
+    pub(crate) fn clear(&mut self) {
+        self.from.clear();
+        self.end.clear();
+        self.index.clear();
+        self.value.clear();
+    }
+
     /// Number of transformations.
     pub(crate) fn count(&self) -> usize {
         self.from.len()

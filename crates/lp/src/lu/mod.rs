@@ -15,12 +15,12 @@ mod singletons;
 mod triangle;
 mod work;
 
-pub(crate) use pivots::BasisColumns;
+use nucleus::Active;
 
 use crate::sparse::SparseVector;
 use crate::tolerances::{most_updates, solve_drop};
 use forrest_tomlin::RowFile;
-use pivots::Pivots;
+use pivots::{BasisColumns, Pivots};
 use triangle::{Direction, Triangle};
 use work::Work;
 
@@ -30,6 +30,14 @@ use work::Work;
 pub(crate) struct Replaced {
     pub(crate) position: u32,
     pub(crate) row: u32,
+}
+
+/// What a factorisation works with: the basis, and room that is kept from one to the next.
+#[derive(Clone, Debug, Default)]
+pub(crate) struct Workspace {
+    pub(crate) columns: BasisColumns,
+    pivots: Pivots,
+    active: Active,
 }
 
 /// LU factors with the updates since.
@@ -52,37 +60,39 @@ pub(crate) struct Factor {
 }
 
 impl Factor {
-    /// Factorises the basis with these columns. Dependent columns are replaced by logicals
-    /// (−1 in a row), which are returned; the factors are those of the mended basis.
+    /// Factorises the basis whose columns stand in the workspace. Dependent columns are replaced by
+    /// logicals (−1 in a row), which are returned; the factors are those of the mended basis.
     /// Work: the nonzeros touched, returned second.
     pub(crate) fn factorise(
-        columns: &BasisColumns,
+        &mut self,
+        space: &mut Workspace,
         threshold: f64,
         singular: f64,
-    ) -> (Self, Vec<Replaced>, u64) {
+    ) -> (Vec<Replaced>, u64) {
+        let Workspace { columns, pivots, active } = space;
+        columns.list_rows();
         let size = columns.size();
-        let mut pivots = Pivots::new(size);
-        let active = singletons::eliminate(columns, singular, &mut pivots);
-        if active {
-            nucleus::eliminate(columns, (threshold, singular), &mut pivots);
+        pivots.reset(size);
+        if singletons::eliminate(columns, singular, pivots) {
+            nucleus::eliminate(active, columns, (threshold, singular), pivots);
         }
         let replaced = pivots.complete();
         let ticks = pivots.work() + columns.nonzeros() as u64 + size as u64;
-        let mut factor = Self {
-            lower_columns: pivots.lower_columns(),
-            upper_rows: pivots.upper_rows(),
-            diagonal: pivots.diagonal,
-            row_of_step: pivots.row_of_step,
-            position_of_slot: pivots.position_of_step,
-            step_of_row: pivots.step_of_row,
-            slot_of_position: pivots.step_of_position,
-            work: Work::new(size + most_updates(size)),
-            ..Self::default()
-        };
-        factor.lower_rows = factor.lower_columns.transposed();
-        factor.upper_columns = factor.upper_rows.transposed();
-        factor.fresh = factor.upper_rows.nonzeros() + factor.lower_rows.nonzeros() + size;
-        (factor, replaced, ticks)
+        pivots.lower_columns(&mut self.lower_columns);
+        pivots.upper_rows(&mut self.upper_rows);
+        std::mem::swap(&mut self.diagonal, &mut pivots.diagonal);
+        std::mem::swap(&mut self.row_of_step, &mut pivots.row_of_step);
+        std::mem::swap(&mut self.position_of_slot, &mut pivots.position_of_step);
+        std::mem::swap(&mut self.step_of_row, &mut pivots.step_of_row);
+        std::mem::swap(&mut self.slot_of_position, &mut pivots.step_of_position);
+        self.lower_rows.transpose(&self.lower_columns);
+        self.upper_columns.transpose(&self.upper_rows);
+        self.file.clear();
+        self.spike.clear();
+        self.is_doubtful = false;
+        self.work.reset(size + most_updates(size));
+        self.fresh = self.upper_rows.nonzeros() + self.lower_rows.nonzeros() + size;
+        (replaced, ticks)
     }
 
     /// Solves B x = b in place: rows in, positions out. Returns the nonzeros touched.

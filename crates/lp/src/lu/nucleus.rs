@@ -21,8 +21,9 @@ struct Candidate {
     product: usize,
 }
 
-/// The active submatrix: values by row, pattern by column.
-struct Active {
+/// The active submatrix: values by row, pattern by column. Kept between factorisations.
+#[derive(Clone, Debug, Default)]
+pub(crate) struct Active {
     rows: Vec<Vec<(u32, f64)>>,
     columns: Vec<Vec<u32>>,
     largest: Vec<f64>,
@@ -37,45 +38,47 @@ struct Active {
 
 /// Eliminates until no entry is as large as `singular`.
 pub(crate) fn eliminate(
+    active: &mut Active,
     basis: &BasisColumns,
     (threshold, singular): (f64, f64),
     pivots: &mut Pivots,
 ) {
-    let mut active = Active::new(basis, (threshold, singular), pivots);
+    (active.threshold, active.singular) = (threshold, singular);
+    active.fill(basis, pivots);
     while let Some(pivot) = active.choose() {
         active.take(pivot, pivots);
     }
 }
 
 impl Active {
-    /// The open rows and positions of the basis.
-    fn new(basis: &BasisColumns, (threshold, singular): (f64, f64), pivots: &Pivots) -> Self {
+    /// Takes the open rows and positions of the basis.
+    fn fill(&mut self, basis: &BasisColumns, pivots: &Pivots) {
         let size = basis.size();
-        let mut active = Self {
-            rows: vec![Vec::new(); size],
-            columns: vec![Vec::new(); size],
-            largest: vec![0.0; size],
-            row_lists: Buckets::new(size),
-            column_lists: Buckets::new(size),
-            pivot_row: vec![0.0; size],
-            seen: vec![0; size],
-            stamp: 0,
-            threshold,
-            singular,
-        };
+        self.rows.iter_mut().for_each(Vec::clear);
+        self.rows.resize(size, Vec::new());
+        self.columns.iter_mut().for_each(Vec::clear);
+        self.columns.resize(size, Vec::new());
+        for values in [&mut self.largest, &mut self.pivot_row] {
+            values.clear();
+            values.resize(size, 0.0);
+        }
+        self.seen.clear();
+        self.seen.resize(size, 0);
+        self.stamp = 0;
+        self.row_lists.reset(size);
+        self.column_lists.reset(size);
         for row in (0..size as u32).rev().filter(|&row| pivots.row_is_open(row)) {
             let open =
                 basis.row(row).iter().filter(|&&(position, _)| pivots.position_is_open(position));
-            active.rows[row as usize] = open.copied().collect();
-            active.refresh(row);
+            self.rows[row as usize].extend(open);
+            self.refresh(row);
         }
         for position in (0..size as u32).rev().filter(|&position| pivots.position_is_open(position))
         {
             let open = basis.column(position).iter().filter(|&&(row, _)| pivots.row_is_open(row));
-            active.columns[position as usize] = open.map(|&(row, _)| row).collect();
-            active.column_lists.insert(position, active.columns[position as usize].len());
+            self.columns[position as usize].extend(open.map(|&(row, _)| row));
+            self.column_lists.insert(position, self.columns[position as usize].len());
         }
-        active
     }
 
     /// Sets the largest entry and the list of a row anew.

@@ -10,39 +10,60 @@ use super::triangle::Triangle;
 pub(crate) const OPEN: u32 = u32::MAX;
 
 /// The columns of a basis, one a position, and the same entries by row.
-#[derive(Debug)]
+#[derive(Clone, Debug, Default)]
 pub(crate) struct BasisColumns {
-    start: Vec<usize>,
+    end: Vec<usize>,
     entry: Vec<(u32, f64)>,
-    row_start: Vec<usize>,
+    row_end: Vec<usize>,
     row_entry: Vec<(u32, f64)>,
 }
 
 impl BasisColumns {
-    /// Gathers `size` columns; `start` has one more entry than there are columns.
-    pub(crate) fn new(start: Vec<usize>, entry: Vec<(u32, f64)>) -> Self {
-        let size = start.len() - 1;
-        let mut row_start = vec![0usize; size + 1];
-        for &(row, _) in &entry {
-            row_start[row as usize + 1] += 1;
+    /// Takes the columns away.
+    pub(crate) fn clear(&mut self) {
+        self.end.clear();
+        self.entry.clear();
+    }
+
+    /// Adds an entry to the column that is being gathered.
+    pub(crate) fn push(&mut self, row: u32, value: f64) {
+        self.entry.push((row, value));
+    }
+
+    /// Ends the column that is being gathered.
+    pub(crate) fn close_column(&mut self) {
+        self.end.push(self.entry.len());
+    }
+
+    /// Lists the entries by row as well, once there is a column for each.
+    pub(crate) fn list_rows(&mut self) {
+        self.row_end.clear();
+        self.row_end.resize(self.size(), 0);
+        for &(row, _) in &self.entry {
+            self.row_end[row as usize] += 1;
         }
-        for row in 0..size {
-            row_start[row + 1] += row_start[row];
+        // The end of each row stands at its beginning while it is filled.
+        let mut sum = 0;
+        for end in &mut self.row_end {
+            sum += *end;
+            *end = sum - *end;
         }
-        let mut next = row_start.clone();
-        let mut row_entry = vec![(0u32, 0.0); entry.len()];
-        for position in 0..size {
-            for &(row, value) in &entry[start[position]..start[position + 1]] {
-                row_entry[next[row as usize]] = (position as u32, value);
-                next[row as usize] += 1;
+        self.row_entry.clear();
+        self.row_entry.resize(self.entry.len(), (0, 0.0));
+        let mut first = 0;
+        for (position, &end) in (0u32..).zip(&self.end) {
+            for &(row, value) in &self.entry[first..end] {
+                let place = &mut self.row_end[row as usize];
+                self.row_entry[*place] = (position, value);
+                *place += 1;
             }
+            first = end;
         }
-        Self { start, entry, row_start, row_entry }
     }
 
     /// Number of rows and of positions.
     pub(crate) fn size(&self) -> usize {
-        self.start.len() - 1
+        self.end.len()
     }
 
     /// Number of nonzeros.
@@ -52,17 +73,24 @@ impl BasisColumns {
 
     /// The entries (row, value) at a position.
     pub(crate) fn column(&self, position: u32) -> &[(u32, f64)] {
-        &self.entry[self.start[position as usize]..self.start[position as usize + 1]]
+        &self.entry[list(&self.end, position)]
     }
 
     /// The entries (position, value) of a row.
     pub(crate) fn row(&self, row: u32) -> &[(u32, f64)] {
-        &self.row_entry[self.row_start[row as usize]..self.row_start[row as usize + 1]]
+        &self.row_entry[list(&self.row_end, row)]
     }
 }
 
+/// Where a list stands, from the ends of all.
+fn list(ends: &[usize], number: u32) -> std::ops::Range<usize> {
+    let at = number as usize;
+    let start = if at == 0 { 0 } else { ends[at - 1] };
+    start..ends[at]
+}
+
 /// Pivots in order, with what they leave.
-#[derive(Debug)]
+#[derive(Clone, Debug, Default)]
 pub(crate) struct Pivots {
     pub(crate) step_of_row: Vec<u32>,
     pub(crate) step_of_position: Vec<u32>,
@@ -79,20 +107,21 @@ pub(crate) struct Pivots {
 
 impl Pivots {
     /// No pivots yet, for a basis of this size.
-    pub(crate) fn new(size: usize) -> Self {
-        Self {
-            step_of_row: vec![OPEN; size],
-            step_of_position: vec![OPEN; size],
-            row_of_step: Vec::with_capacity(size),
-            position_of_step: Vec::with_capacity(size),
-            diagonal: Vec::with_capacity(size),
-            lower: Vec::new(),
-            lower_end: Vec::with_capacity(size),
-            upper: Vec::new(),
-            upper_end: Vec::with_capacity(size),
-            dropped: vec![false; size],
-            work: 0,
+    pub(crate) fn reset(&mut self, size: usize) {
+        for steps in [&mut self.step_of_row, &mut self.step_of_position] {
+            steps.clear();
+            steps.resize(size, OPEN);
         }
+        self.row_of_step.clear();
+        self.position_of_step.clear();
+        self.diagonal.clear();
+        self.lower.clear();
+        self.lower_end.clear();
+        self.upper.clear();
+        self.upper_end.clear();
+        self.dropped.clear();
+        self.dropped.resize(size, false);
+        self.work = 0;
     }
 
     /// Nonzeros touched so far.
@@ -154,28 +183,32 @@ impl Pivots {
     }
 
     /// L by column, in steps.
-    pub(crate) fn lower_columns(&self) -> Triangle {
-        let end = self.lower_end.iter().map(|&end| end as u32).collect();
-        let index = self.lower.iter().map(|&(row, _)| self.step_of_row[row as usize]).collect();
-        Triangle::new(end, index, self.lower.iter().map(|&(_, value)| value).collect())
+    pub(crate) fn lower_columns(&self, out: &mut Triangle) {
+        out.begin();
+        let mut first = 0;
+        for &end in &self.lower_end {
+            for &(row, value) in &self.lower[first..end] {
+                out.push(self.step_of_row[row as usize], value);
+            }
+            out.close_list();
+            first = end;
+        }
+        out.finish();
     }
 
     /// U by row, in steps, without the columns that were replaced.
-    pub(crate) fn upper_rows(&self) -> Triangle {
-        let mut ends = Vec::with_capacity(self.upper_end.len());
-        let mut index = Vec::with_capacity(self.upper.len());
-        let mut value = Vec::with_capacity(self.upper.len());
+    pub(crate) fn upper_rows(&self, out: &mut Triangle) {
+        out.begin();
         let mut first = 0;
         for &end in &self.upper_end {
-            for &(position, entry) in &self.upper[first..end] {
+            for &(position, value) in &self.upper[first..end] {
                 if !self.dropped[position as usize] {
-                    index.push(self.step_of_position[position as usize]);
-                    value.push(entry);
+                    out.push(self.step_of_position[position as usize], value);
                 }
             }
-            ends.push(index.len() as u32);
+            out.close_list();
             first = end;
         }
-        Triangle::new(ends, index, value)
+        out.finish();
     }
 }

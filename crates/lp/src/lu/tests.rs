@@ -21,14 +21,19 @@ impl Random {
 
 type Columns = Vec<Vec<(u32, f64)>>;
 
-fn gather(columns: &Columns) -> BasisColumns {
-    let mut start = vec![0];
-    let mut entry = Vec::new();
+fn gather(columns: &Columns, space: &mut Workspace) {
+    space.columns.clear();
     for column in columns {
-        entry.extend_from_slice(column);
-        start.push(entry.len());
+        column.iter().for_each(|&(row, value)| space.columns.push(row, value));
+        space.columns.close_column();
     }
-    BasisColumns::new(start, entry)
+}
+
+fn factorise(columns: &Columns) -> (Factor, Vec<Replaced>) {
+    let (mut factor, mut space) = (Factor::default(), Workspace::default());
+    gather(columns, &mut space);
+    let (replaced, _) = factor.factorise(&mut space, 0.1, 1e-12);
+    (factor, replaced)
 }
 
 /// A random matrix: a permuted diagonal (so that it is mostly regular) and further entries.
@@ -97,7 +102,7 @@ fn solves_with_random_bases() {
         let size = 1 + random.below(60) as usize;
         let extra = random.below(5);
         let mut columns = random_columns(&mut random, size, extra);
-        let (mut factor, replaced, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
+        let (mut factor, replaced) = factorise(&columns);
         for r in replaced {
             columns[r.position as usize] = vec![(r.row, -1.0)];
         }
@@ -109,7 +114,7 @@ fn solves_with_random_bases() {
 /// Factors of a random basis, and its columns as they are after dependent ones were replaced.
 fn factorised(random: &mut Random, size: usize, kind: u64) -> (Factor, Columns) {
     let mut columns = basis_of_kind(random, size, kind);
-    let (factor, replaced, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
+    let (factor, replaced) = factorise(&columns);
     for r in replaced {
         columns[r.position as usize] = vec![(r.row, -1.0)];
     }
@@ -166,7 +171,7 @@ fn solves_after_updates_are_those_of_fresh_factors() {
         let size = 5 + random.below(40) as usize;
         let (mut factor, mut columns) = factorised(&mut random, size, seed % 3);
         updates += exchange_some(&mut factor, &mut columns, &mut random);
-        let (mut fresh, replaced, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
+        let (mut fresh, replaced) = factorise(&columns);
         assert!(replaced.is_empty() && !factor.is_doubtful, "seed {seed}");
         for step in 0..size as u32 {
             let unit = |k: usize| f64::from(u8::from(k == step as usize));
@@ -191,7 +196,7 @@ fn solves_after_updates_are_those_of_fresh_factors() {
 #[test]
 fn an_update_that_does_not_fit_is_noticed() {
     let columns: Columns = vec![vec![(0, 1.0), (1, 2.0)], vec![(1, 1.0)], vec![(2, 1.0)]];
-    let (mut factor, _, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
+    let (mut factor, _) = factorise(&columns);
     let mut alpha = vector(&[1.0, 3.0, 1.0]);
     factor.ftran_entering(&mut alpha);
     assert!(!factor.is_worn());
@@ -203,7 +208,7 @@ fn an_update_that_does_not_fit_is_noticed() {
 fn dependent_columns_are_replaced_by_logicals() {
     let columns: Columns =
         vec![vec![(0, 1.0), (1, 2.0)], vec![(0, 2.0), (1, 4.0)], vec![(1, 1.0), (2, 1.0)], vec![]];
-    let (mut factor, replaced, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
+    let (mut factor, replaced) = factorise(&columns);
     assert_eq!(replaced.len(), 2);
     let mut mended = columns;
     for r in replaced {
@@ -219,11 +224,12 @@ fn sparse_and_full_solves_give_the_same_bits() {
     let mut random = Random(77);
     let size = 400;
     let mut columns = random_columns(&mut random, size, 1);
-    let (mut factor, _, _) = Factor::factorise(&gather(&columns), 0.1, 1e-12);
+    let (mut factor, _) = factorise(&columns);
     exchange_some(&mut factor, &mut columns, &mut random);
     let slots = factor.diagonal.len();
     for slot in 0..slots as u32 {
-        let mut sparse = Work::new(size + most_updates(size));
+        let mut sparse = Work::default();
+        sparse.reset(size + most_updates(size));
         let mut full = sparse.clone();
         sparse.set(slot, 1.0);
         (0..slots as u32).for_each(|k| full.set(k, f64::from(u8::from(k == slot))));
@@ -236,5 +242,35 @@ fn sparse_and_full_solves_give_the_same_bits() {
             "slot {slot}"
         );
         assert!(sparse.bits.iter().chain(&full.bits).all(|&word| word == 0));
+    }
+}
+
+/// Room that other factorisations have left, larger and smaller ones and one of a singular basis,
+/// changes no bit.
+#[test]
+fn a_used_workspace_gives_the_same_factors() {
+    let mut random = Random(11);
+    let (mut factor, mut space) = (Factor::default(), Workspace::default());
+    for round in 0..40 {
+        let size = 2 + random.below(30) as usize;
+        let mut columns = random_columns(&mut random, size, 4);
+        if round % 5 == 4 {
+            columns[1] = columns[0].clone();
+        }
+        gather(&columns, &mut space);
+        let (replaced, _) = factor.factorise(&mut space, 0.1, 1e-12);
+        let (mut fresh, expected) = factorise(&columns);
+        assert_eq!(replaced, expected);
+        let values: Vec<f64> = (0..size).map(|i| 1.0 + i as f64).collect();
+        let (mut used, mut new) = (vector(&values), vector(&values));
+        factor.ftran(&mut used);
+        fresh.ftran(&mut new);
+        factor.btran(&mut used);
+        fresh.btran(&mut new);
+        for i in 0..size as u32 {
+            assert_eq!(used.get(i).to_bits(), new.get(i).to_bits(), "round {round}");
+        }
+        factor.ftran_entering(&mut used);
+        factor.update(0, 1.0);
     }
 }

@@ -32,13 +32,32 @@ pub(crate) struct Triangle {
 }
 
 impl Triangle {
-    /// A triangle from the ends of its lists and their entries, one after the other.
-    pub(crate) fn new(end: Vec<u32>, index: Vec<u32>, value: Vec<f64>) -> Self {
-        let mut start = Vec::with_capacity(end.len());
-        start.push(0);
-        start.extend_from_slice(&end);
-        start.pop();
-        Self { start, room: end.clone(), end, nonzeros: index.len(), index, value }
+    /// Empties the triangle, to be filled list by list.
+    pub(crate) fn begin(&mut self) {
+        self.end.clear();
+        self.index.clear();
+        self.value.clear();
+    }
+
+    /// Adds an entry to the list that is being filled.
+    pub(crate) fn push(&mut self, index: u32, value: f64) {
+        self.index.push(index);
+        self.value.push(value);
+    }
+
+    /// Ends the list that is being filled.
+    pub(crate) fn close_list(&mut self) {
+        self.end.push(self.index.len() as u32);
+    }
+
+    /// Ends the filling.
+    pub(crate) fn finish(&mut self) {
+        self.nonzeros = self.index.len();
+        self.start.clear();
+        self.start.push(0);
+        self.start.extend_from_slice(&self.end);
+        self.start.pop();
+        self.room.clone_from(&self.end);
     }
 
     /// Number of nonzeros beside the diagonal.
@@ -61,33 +80,35 @@ impl Triangle {
         self.index[range.clone()].iter().copied().zip(self.value[range].iter().copied())
     }
 
-    /// The same entries listed from the other side.
-    pub(crate) fn transposed(&self) -> Self {
-        let size = self.slots();
-        let mut end = vec![0u32; size];
+    /// Takes the entries of another triangle, listed from the other side.
+    pub(crate) fn transpose(&mut self, other: &Self) {
+        let size = other.slots();
+        self.end.clear();
+        self.end.resize(size, 0);
         for slot in 0..size {
-            for &i in &self.index[self.range(slot)] {
-                end[i as usize] += 1;
+            for &i in &other.index[other.range(slot)] {
+                self.end[i as usize] += 1;
             }
         }
-        let mut next = Vec::with_capacity(size);
+        // The end of each list stands at its beginning while it is filled.
         let mut sum = 0;
-        for count in &mut end {
-            next.push(sum);
-            sum += *count;
-            *count = sum;
+        for end in &mut self.end {
+            sum += *end;
+            *end = sum - *end;
         }
-        let mut index = vec![0u32; self.nonzeros];
-        let mut value = vec![0.0; self.nonzeros];
+        self.index.clear();
+        self.index.resize(other.nonzeros, 0);
+        self.value.clear();
+        self.value.resize(other.nonzeros, 0.0);
         for slot in 0..size {
-            for (i, entry) in self.list(slot as u32) {
-                let place = &mut next[i as usize];
-                index[*place as usize] = slot as u32;
-                value[*place as usize] = entry;
+            for (i, entry) in other.list(slot as u32) {
+                let place = &mut self.end[i as usize];
+                self.index[*place as usize] = slot as u32;
+                self.value[*place as usize] = entry;
                 *place += 1;
             }
         }
-        Self::new(end, index, value)
+        self.finish();
     }
 
     /// Appends an empty list.

@@ -17,13 +17,13 @@ pub(crate) struct Work {
 
 impl Work {
     /// All zero, for this many slots.
-    pub(crate) fn new(slots: usize) -> Self {
-        Self {
-            value: vec![0.0; slots],
-            index: Vec::new(),
-            bits: vec![0; slots.div_ceil(64)],
-            drop: 0.0,
-        }
+    pub(crate) fn reset(&mut self, slots: usize) {
+        self.value.clear();
+        self.value.resize(slots, 0.0);
+        self.index.clear();
+        self.bits.clear();
+        self.bits.resize(slots.div_ceil(64), 0);
+        self.drop = 0.0;
     }
 
     /// Sets a slot that is zero.

@@ -337,3 +337,29 @@ fn noise_and_long_names_end() {
     assert!(short.contains(&"name.undeclared".to_owned()), "{short:?}");
     assert!(found.iter().all(|d| d.message.len() < 400));
 }
+
+/// Braces and environments that never close, and small letters in a row, were each looked for to
+/// the end of the text, once for every one of them: two million bytes took minutes.
+#[test]
+fn no_time_grows_with_the_square_of_a_text() {
+    let units = [
+        "\\text{.) for all ",
+        "\\stackrel{a}{",
+        "∪\\intertext{.",
+        "^{2}\\begin{cases}",
+        "\\left\\{\\begin{array}",
+        "xᵢⱼ",
+        "x(A)",
+        "∑ n",
+        "n∑j=1",
+        "\\left. a \\right\\} ",
+        "∀ i ∈ V \\quad ",
+    ];
+    for unit in units {
+        for head in ["minimise\n x\nsubject to\n x ≤ 1 ", "data\n"] {
+            let text = format!("{head}{}", unit.repeat(400_000 / unit.len()));
+            let parsed = parse(&text);
+            assert!(on_boundaries(&text, &parsed.diagnostics), "{unit}");
+        }
+    }
+}

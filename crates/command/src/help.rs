@@ -113,6 +113,10 @@ should know goes to standard error.
   --as text       the same in journal notation
   --as scenario   the scenario file in its usual spelling
   --as link       #s1.…, to be put behind the address of the page
+  --as report     the scenario is run, its studies too, and the decision record
+                  written as one HTML file that prints
+  --as markdown   the same record as Markdown
+  --as csv        the scenario is run and its results written as a table
   --rival LETTER  which rival; a scenario or link without it holds them all
   --instance N    which of several instances (1 unless given)
 ";

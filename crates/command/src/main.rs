@@ -14,6 +14,7 @@ mod list;
 mod options;
 mod progress;
 mod read;
+mod record;
 mod run;
 mod same;
 mod second;

@@ -76,36 +76,44 @@ pub(crate) enum Form {
     Text,
     Scenario,
     Link,
+    /// The decision record as HTML.
+    Report,
+    /// The same as Markdown.
+    Markdown,
+    /// The results as a table.
+    Csv,
 }
 
 /// The forms by name.
-const FORMS: [(&str, Form); 5] = [
+const FORMS: [(&str, Form); 8] = [
     ("mps", Form::Mps),
     ("latex", Form::Latex),
     ("text", Form::Text),
     ("scenario", Form::Scenario),
     ("link", Form::Link),
+    ("report", Form::Report),
+    ("markdown", Form::Markdown),
+    ("csv", Form::Csv),
 ];
 
 impl Form {
     /// Whether it holds the whole scenario where no rival is named.
     pub(crate) fn is_whole(self) -> bool {
-        matches!(self, Self::Scenario | Self::Link)
+        matches!(self, Self::Scenario | Self::Link) || self.is_run()
+    }
+
+    /// Whether the scenario is run for it.
+    pub(crate) fn is_run(self) -> bool {
+        matches!(self, Self::Report | Self::Markdown | Self::Csv)
     }
 
     fn named(word: &str) -> Result<Self, String> {
         let found = FORMS.iter().find(|(name, _)| *name == word).map(|(_, form)| *form);
         let known = FORMS.map(|(name, _)| name);
-        found.ok_or_else(|| match word {
-            "report" | "csv" => format!(
-                "--as {word} is not in this version: there are {}; hullward run --json gives every number",
-                known.join(", ")
-            ),
-            _ => {
-                let hint = nearest(word, &known).map(|near| format!("did you mean {near}? "));
-                let hint = hint.unwrap_or_default();
-                format!("there is no form {word}: {hint}there are {}", known.join(", "))
-            }
+        found.ok_or_else(|| {
+            let hint = nearest(word, &known).map(|near| format!("did you mean {near}? "));
+            let hint = hint.unwrap_or_default();
+            format!("there is no form {word}: {hint}there are {}", known.join(", "))
         })
     }
 }
@@ -314,8 +322,11 @@ mod tests {
     #[test]
     fn wrong_words_come_with_the_nearest_right_one() {
         assert!(call("rum a").expect_err("wrong").contains("did you mean run?"));
-        let refused = call("write a --as report").expect_err("refused");
-        assert!(refused.contains("there are mps, latex, text, scenario, link"), "{refused}");
+        let refused = call("write a --as pdf").expect_err("refused");
+        assert!(
+            refused.contains("there are mps, latex, text, scenario, link, report"),
+            "{refused}"
+        );
         assert!(call("write a --as tex").expect_err("wrong").contains("did you mean text?"));
         assert!(call("run a --jsn").expect_err("wrong").contains("did you mean --json?"));
         for wrong in [

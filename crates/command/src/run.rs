@@ -104,7 +104,7 @@ impl Job<'_> {
         for instance in 0..scenario.instances().count().max(1) {
             let title = instance_title(scenario, instance);
             for study in &scenario.studies {
-                let (reports, ended) = self.study(scenario, instance, study);
+                let (reports, ended) = run_study(scenario, instance, study);
                 if ended == Ending::Limit {
                     let (name, kind, seconds) =
                         (&self.source.name, &study.kind, scenario.run.seconds);
@@ -136,22 +136,6 @@ impl Job<'_> {
         Ok(ending)
     }
 
-    /// One study, with a look at the clock between slices.
-    fn study(&self, scenario: &Scenario, instance: usize, study: &Study) -> (Vec<Report>, Ending) {
-        let clock = Clock::start();
-        let mut line = Line::new();
-        let mut run = StudyRun::new(scenario, instance, study);
-        while !run.advance(USUAL_SLICE) {
-            line.say(&study.kind, &run.doing(), &clock);
-            if clock.is_over(scenario.run.seconds) {
-                line.wipe();
-                return (Vec::new(), Ending::Limit);
-            }
-        }
-        line.wipe();
-        (run.take(), Ending::Done)
-    }
-
     /// The places of the rivals to run.
     fn chosen(&self, scenario: &Scenario) -> std::result::Result<Vec<usize>, String> {
         let count = scenario.rivals.len();
@@ -180,14 +164,7 @@ impl Job<'_> {
         place: (usize, usize),
         err: &mut dyn Write,
     ) -> Result<(RivalResult, Ending)> {
-        let clock = Clock::start();
-        let (run, timing) = timed(scenario, place, &clock);
-        let mut one = result(scenario, place, &run);
-        one.timing = Some(timing);
-        add_opinion(&mut one, &run, scenario.run.seconds, &clock);
-        if run.stopped {
-            say_the_time(&mut one, scenario.run.seconds);
-        }
+        let (run, one) = run_one(scenario, place);
         self.complain_of(&one, &run, (scenario, parsed, place), err)?;
         if let Some(path) = &self.options.log {
             save(path, run)?;
@@ -225,6 +202,39 @@ impl Job<'_> {
         }
         writeln!(err, "{name}: rival {} could not be run: {}", one.rival, error.message)
     }
+}
+
+/// A study, with a look at the clock between slices.
+pub(crate) fn run_study(
+    scenario: &Scenario,
+    instance: usize,
+    study: &Study,
+) -> (Vec<Report>, Ending) {
+    let clock = Clock::start();
+    let mut line = Line::new();
+    let mut run = StudyRun::new(scenario, instance, study);
+    while !run.advance(USUAL_SLICE) {
+        line.say(&study.kind, &run.doing(), &clock);
+        if clock.is_over(scenario.run.seconds) {
+            line.wipe();
+            return (Vec::new(), Ending::Limit);
+        }
+    }
+    line.wipe();
+    (run.take(), Ending::Done)
+}
+
+/// A rival on an instance, with what a second LP code says of it.
+pub(crate) fn run_one(scenario: &Scenario, place: (usize, usize)) -> (RivalRun, RivalResult) {
+    let clock = Clock::start();
+    let (run, timing) = timed(scenario, place, &clock);
+    let mut one = result(scenario, place, &run);
+    one.timing = Some(timing);
+    add_opinion(&mut one, &run, scenario.run.seconds, &clock);
+    if run.stopped {
+        say_the_time(&mut one, scenario.run.seconds);
+    }
+    (run, one)
 }
 
 /// Runs one rival with a look at the clock between slices.

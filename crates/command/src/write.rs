@@ -11,6 +11,7 @@ use record::scenario::{Scenario, letter};
 use crate::complain::complain;
 use crate::ending::Ending;
 use crate::options::{Form, WriteOptions};
+use crate::record as on_record;
 use crate::source::{self, Source};
 
 /// Writes what is asked for to the file that is named, else to standard output; notes go to
@@ -28,6 +29,9 @@ pub(crate) fn write(
     complain(err, &source.name, None, &parsed.complaints)?;
     let Some(scenario) = &parsed.scenario else { return Ok(Ending::Wrong) };
     let job = Job { options, source: &source, parsed: &parsed, scenario };
+    if options.form.is_run() {
+        return job.put_on_record(out, err);
+    }
     match job.made(err)? {
         Ok(handed) => job.hand_over(&handed, out, err),
         Err(ending) => Ok(ending),
@@ -60,7 +64,7 @@ impl Job<'_> {
             (_, (_, None)) => return self.wrong(&self.which(), err).map(Err),
             (Form::Mps, (instance, Some(rival))) => engine::mps(self.scenario, (instance, rival)),
             (Form::Text, (_, Some(rival))) => engine::notation_text(self.scenario, rival),
-            (Form::Latex, (_, Some(rival))) => engine::latex(self.scenario, rival),
+            (_, (_, Some(rival))) => engine::latex(self.scenario, rival),
         };
         let rival = place.1.unwrap_or(0);
         match made {
@@ -131,6 +135,19 @@ impl Job<'_> {
         }
         let what = format!("rival {} cannot be written: {}", letter(rival), error.message);
         self.wrong(&what, err)
+    }
+
+    /// Runs the scenario, or the rival that is named, and writes what came out.
+    fn put_on_record(&self, out: &mut dyn Write, err: &mut dyn Write) -> Result<Ending> {
+        let rival = match self.place() {
+            Ok((_, rival)) => rival,
+            Err(message) => return self.wrong(&message, err),
+        };
+        let scenario = part(self.scenario, rival);
+        let what = (self.options.form, self.source.name.as_str());
+        let (text, ending) = on_record::record(&scenario, what, err)?;
+        let handed = HandOver { text, notes: Vec::new(), complaints: Vec::new() };
+        Ok(ending.max(self.hand_over(&handed, out, err)?))
     }
 
     fn hand_over(

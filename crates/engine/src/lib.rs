@@ -37,6 +37,7 @@ pub use explain::{explained, explanation};
 pub use handover::{HandOver, Refusal, latex, mps, notation_text};
 pub use load::{describe, prepare};
 pub use mps::{looks_like_mps, mps_report};
+pub use readings::instance_report;
 pub use studies::{KINDS, StudyRun, cells, gathered};
 pub use worker::Worker;
 

@@ -8,7 +8,7 @@ use record::results::ErrorReport;
 use record::scenario::{InstanceText, reader_and_part};
 
 use crate::fault::unknown;
-use crate::map::instance_report;
+use crate::map;
 use crate::mps;
 
 /// The last text that was read, with what came out of it.
@@ -58,8 +58,17 @@ impl Readings {
             return Ok(report);
         }
         let reading = self.read(text)?;
-        Ok(instance_report(&text.text, &reading))
+        Ok(map::instance_report(&text.text, &reading))
     }
+}
+
+/// What is understood of an instance; of one that cannot be read, the complaints.
+#[must_use]
+pub fn instance_report(text: &InstanceText) -> InstanceReport {
+    Readings::default().report(text).unwrap_or_else(|error| InstanceReport {
+        complaints: error.complaints,
+        ..InstanceReport::default()
+    })
 }
 
 /// Whether a text is a whole model in MPS, said to be one or looking like one.

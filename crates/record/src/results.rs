@@ -176,7 +176,7 @@ pub struct RootReport {
 pub const WAITS: &str = "it waits for a branching by hand";
 
 /// What a search gave, so far or at its end.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+#[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
 pub struct SearchReport {
     /// How it ended.
     pub status: Status,

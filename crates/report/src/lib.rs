@@ -11,11 +11,15 @@
 //! | [`opinion`] | our root beside what a second LP code says |
 //! | [`proof`] | what exact arithmetic proved of a bound, in words |
 //! | [`study`] | what studies found, as sections of words and tables |
+//! | [`decision`] | the decision record as HTML and Markdown |
+//! | [`csv`](mod@csv) | results as comma-separated values |
 //! | [`labels`] | names beside their stops without collisions |
 //!
 //! Everything is pure and the same on every machine.
 
 pub mod axis;
+pub mod csv;
+pub mod decision;
 pub mod density;
 pub mod explain;
 pub mod labels;

@@ -38,7 +38,7 @@ pub struct Table {
 }
 
 impl Table {
-    fn new(head: &[&str], words: &[usize]) -> Self {
+    pub(crate) fn new(head: &[&str], words: &[usize]) -> Self {
         let head = head.iter().map(|&cell| cell.to_owned()).collect();
         Self { head, words: words.to_vec(), rows: Vec::new() }
     }

@@ -156,3 +156,29 @@ fn generated_instances_of_each_class_are_paired() {
     let said = err(&hullward(&["run", "-"], &wrong));
     assert!(said.contains("there is no class \"zero\" of data; there are uniform"), "{said}");
 }
+
+#[test]
+fn the_decision_record_holds_what_was_found_and_what_would_reopen_it() {
+    let text = growth().replace("search = false", "search = true");
+    let page = hullward(&["write", "-", "--as", "report"], &text);
+    assert_eq!(status(&page), 0, "{}", err(&page));
+    let page = out(&page);
+    assert!(page.starts_with("<!doctype html>") && page.contains("<h1>Six stops (invented)</h1>"));
+    let words = out(&hullward(&["write", "-", "--as", "markdown"], &text));
+    for sentence in [
+        "# Six stops (invented)",
+        "A: Position labels (Miller, Tucker & Zemlin 1960) (atsp/labels)",
+        "every leaf checked.",
+        "### Growth (parts of the instance; at most 5,000 nodes a run)",
+        "an instance larger than 5: nothing larger was run",
+        "\\tag{order}",
+        "#s1.",
+        "come first.",
+    ] {
+        assert!(words.contains(sentence), "{sentence}\n{words}");
+    }
+    let table = out(&hullward(&["write", "-", "--as", "csv"], &text));
+    let lines: Vec<&str> = table.lines().collect();
+    assert_eq!(lines.len(), 3);
+    assert!(lines[1].starts_with("Six stops (invented),,A,"), "{table}");
+}

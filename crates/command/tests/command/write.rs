@@ -213,7 +213,7 @@ fn what_cannot_be_written_is_refused_in_words() {
         assert!(err.contains(says), "{words:?}: {err}");
     };
     let write = |rest: &[&'static str]| [&["write", "-"], rest].concat();
-    for form in ["report", "csv"] {
+    for form in ["pdf", "docx"] {
         let says = "there are mps, latex, text, scenario, link";
         refused(&write(&["--as", form]), SCENARIO, says);
     }

@@ -1,0 +1,88 @@
+//! `hullward write --as report, markdown or csv`: every rival and every study of a scenario is run, and what came out
+//! is put on record.
+
+use std::io::{Result, Write};
+
+use engine::native::instance_title;
+use record::file;
+use record::link;
+use record::results::RivalResult;
+use record::scenario::{Scenario, letter};
+use record::study::Report;
+use report::csv::csv;
+use report::decision::{self, Evidence};
+
+use crate::ending::Ending;
+use crate::options::Form;
+use crate::run::{run_one, run_study};
+
+/// The record of a scenario in one of its forms, and how the runs ended; rivals that could not be run
+/// are named on `err` and stand in the record as such.
+pub(crate) fn record(
+    scenario: &Scenario,
+    (form, name): (Form, &str),
+    err: &mut dyn Write,
+) -> Result<(String, Ending)> {
+    let mut ending = Ending::Done;
+    let mut results = Vec::new();
+    for instance in 0..scenario.instances().count().max(1) {
+        for rival in 0..scenario.rivals.len() {
+            let (_, one) = run_one(scenario, (instance, rival));
+            if let Some(error) = &one.error {
+                let (letter, message) = (letter(rival), &error.message);
+                writeln!(err, "{name}: rival {letter} could not be run: {message}")?;
+                ending = Ending::Wrong;
+            }
+            results.push(one);
+        }
+    }
+    if form == Form::Csv {
+        return Ok((csv(&results), ending));
+    }
+    let mut studies = Vec::new();
+    for instance in 0..scenario.instances().count().max(1) {
+        for study in &scenario.studies {
+            let (reports, ended) = run_study(scenario, instance, study);
+            if ended == Ending::Limit {
+                let (kind, seconds) = (&study.kind, scenario.run.seconds);
+                writeln!(err, "{name}: the study {kind} was stopped by the limit of {seconds} s")?;
+            }
+            ending = ending.max(ended);
+            let title = instance_title(scenario, instance);
+            studies.extend(reports.into_iter().map(|report| (title.clone(), report)));
+        }
+    }
+    Ok((set(scenario, form, &results, &studies), ending))
+}
+
+fn set(
+    scenario: &Scenario,
+    form: Form,
+    results: &[RivalResult],
+    studies: &[(String, Report)],
+) -> String {
+    let facts = facts(scenario);
+    let statements: Vec<String> = (0..scenario.rivals.len())
+        .map(|rival| {
+            engine::notation_text(scenario, rival).map_or_else(|_| String::new(), |it| it.text)
+        })
+        .collect();
+    let link = link::pack(&file::print(scenario)).unwrap_or_default();
+    let link = if link.len() > link::OFTEN_CUT { String::new() } else { link };
+    let evidence = Evidence {
+        scenario,
+        results,
+        studies,
+        facts: &facts,
+        statements: &statements,
+        engine: engine::VERSION,
+        link: &link,
+    };
+    if form == Form::Markdown { decision::markdown(&evidence) } else { decision::html(&evidence) }
+}
+
+/// What is understood of the first instance.
+fn facts(scenario: &Scenario) -> Vec<String> {
+    let report = scenario.instance.as_ref().map(engine::instance_report);
+    report.map_or_else(Vec::new, |report| report.facts)
+}

@@ -1,0 +1,251 @@
+//! The decision record: what was asked, what was found, and what would reopen it, on paper. It is
+//! put together once as blocks and set as HTML or Markdown; every sentence comes from figures that
+//! stand beside it.
+
+mod html;
+mod markdown;
+mod reopen;
+
+use record::results::{Proof, RivalResult, Status};
+use record::scenario::{FamilyState, Rival, Scenario, letter};
+use record::study::Report;
+
+use crate::number::{count, of, percent, short};
+use crate::study::{Section, Table, sections};
+
+/// Stands at the end of every record.
+const CAUTION: &str = "A plan that comes out of a model is a decision aid; driving, working-time, \
+energy and safety rules of the place, and the people licensed to apply them, come first.";
+
+/// What a record is made of.
+#[derive(Debug, Clone, Copy)]
+pub struct Evidence<'e> {
+    /// The scenario.
+    pub scenario: &'e Scenario,
+    /// What each rival gave, instance by instance.
+    pub results: &'e [RivalResult],
+    /// What studies found, with the instance where there are several.
+    pub studies: &'e [(String, Report)],
+    /// What was understood of the first instance, in sentences.
+    pub facts: &'e [String],
+    /// The notation of each rival; empty for a model in MPS.
+    pub statements: &'e [String],
+    /// The engine's version.
+    pub engine: &'e str,
+    /// The link's part behind the page's address; empty where it is too long.
+    pub link: &'e str,
+}
+
+/// A piece of the record.
+#[derive(Debug, Clone, PartialEq, Eq)]
+enum Block {
+    Title(String),
+    Heading(String),
+    Minor(String),
+    Text(String),
+    List(Vec<String>),
+    Table(Table),
+    Code(String),
+}
+
+/// The record as one HTML file that needs nothing else and prints on A4 and Letter.
+#[must_use]
+pub fn html(evidence: &Evidence<'_>) -> String {
+    html::document(&blocks(evidence))
+}
+
+/// The record as Markdown.
+#[must_use]
+pub fn markdown(evidence: &Evidence<'_>) -> String {
+    markdown::document(&blocks(evidence))
+}
+
+fn blocks(evidence: &Evidence<'_>) -> Vec<Block> {
+    let mut out = question(evidence);
+    out.push(Block::Heading("What was found".to_owned()));
+    out.push(Block::List(findings(evidence)));
+    out.push(Block::Heading("The rivals side by side".to_owned()));
+    for instance in instances(evidence) {
+        if !instance.is_empty() {
+            out.push(Block::Minor(instance.clone()));
+        }
+        out.push(Block::Table(results(evidence, &instance)));
+    }
+    if !evidence.studies.is_empty() {
+        out.push(Block::Heading("Evidence".to_owned()));
+        for (instance, report) in evidence.studies {
+            out.extend(sections(report).into_iter().flat_map(|found| section(instance, found)));
+        }
+    }
+    out.push(Block::Heading("What reopens this decision".to_owned()));
+    out.push(Block::List(reopen::conditions(evidence)));
+    out.extend(statements(evidence));
+    out.extend(reproduce(evidence));
+    out.push(Block::Text(CAUTION.to_owned()));
+    out
+}
+
+fn question(evidence: &Evidence<'_>) -> Vec<Block> {
+    let title = &evidence.scenario.title;
+    let title = if title.is_empty() { "Which formulation?".to_owned() } else { title.clone() };
+    let mut out = vec![Block::Title(title)];
+    let notes = evidence.scenario.notes.split("\n\n").map(str::trim);
+    out.extend(notes.filter(|note| !note.is_empty()).map(|note| Block::Text(note.to_owned())));
+    if !evidence.facts.is_empty() {
+        out.push(Block::Heading("The instance".to_owned()));
+        out.push(Block::List(evidence.facts.to_vec()));
+    }
+    out.push(Block::Heading("The rivals".to_owned()));
+    let rivals = evidence.scenario.rivals.iter().enumerate();
+    out.push(Block::List(rivals.map(|(place, rival)| named(evidence, place, rival)).collect()));
+    out
+}
+
+/// A rival in a sentence: its title, where it is from, and the families that are not as published.
+fn named(evidence: &Evidence<'_>, place: usize, rival: &Rival) -> String {
+    let own = letter(place);
+    let found = evidence.results.iter().find(|result| result.rival == own);
+    let title = found.map_or(rival.title.as_str(), |result| result.title.as_str());
+    let from = match (&rival.from, &rival.mps) {
+        (Some(id), _) => format!(" ({id})"),
+        (None, Some(_)) => " (a model in MPS)".to_owned(),
+        (None, None) => " (own formulation)".to_owned(),
+    };
+    let states = rival.families.iter().map(|(name, state)| {
+        let state = match state {
+            FamilyState::In => "in",
+            FamilyState::OnDemand => "on demand",
+            FamilyState::Out => "out",
+        };
+        format!("{name} {state}")
+    });
+    let states: Vec<String> = states.collect();
+    let states = if states.is_empty() { String::new() } else { format!("; {}", states.join(", ")) };
+    format!("{own}: {title}{from}{states}")
+}
+
+/// The sentences of the studies, and for each rival what its search came to.
+fn findings(evidence: &Evidence<'_>) -> Vec<String> {
+    let mut out: Vec<String> = evidence.results.iter().filter_map(outcome).collect();
+    for (_, report) in evidence.studies {
+        let verdicts =
+            matches!(report, Report::Equivalence(_) | Report::Order(_) | Report::Growth(_));
+        if verdicts {
+            let found = sections(report).into_iter();
+            out.extend(found.flat_map(|section| section.verdict.into_iter().take(1)));
+        }
+    }
+    out
+}
+
+/// What a rival came to on an instance, with the interval in which the best plan lies.
+fn outcome(result: &RivalResult) -> Option<String> {
+    let on =
+        if result.instance.is_empty() { String::new() } else { format!(" on {}", result.instance) };
+    let root = result.root.as_ref()?;
+    let bound = root.bound.map_or_else(|| "no bound".to_owned(), short);
+    let proved = if root.proof == Proof::Exact { ", checked" } else { "" };
+    let search = match (&result.search, result.status) {
+        (Some(search), Status::Optimal) => {
+            let value = search.incumbent.or(search.bound).map_or_else(String::new, short);
+            let checked = if search.checked { ", every leaf checked" } else { "" };
+            format!("; optimum {value} after {}{checked}", of(u64::from(search.nodes), "node"))
+        }
+        (Some(search), _) => match (search.bound, search.incumbent) {
+            (Some(bound), Some(incumbent)) => format!(
+                "; stopped after {}: the best plan lies between {} and {}",
+                of(u64::from(search.nodes), "node"),
+                short(bound),
+                short(incumbent)
+            ),
+            _ => format!("; stopped after {}", of(u64::from(search.nodes), "node")),
+        },
+        (None, _) => String::new(),
+    };
+    Some(format!("{}{on}: root bound {bound}{proved}{search}.", result.rival))
+}
+
+fn instances(evidence: &Evidence<'_>) -> Vec<String> {
+    let mut out: Vec<String> = Vec::new();
+    for result in evidence.results {
+        if !out.contains(&result.instance) {
+            out.push(result.instance.clone());
+        }
+    }
+    out
+}
+
+/// The table of an instance.
+fn results(evidence: &Evidence<'_>, instance: &str) -> Table {
+    let head = ["rival", "rows", "columns", "root bound", "bound", "best plan", "nodes", "status"];
+    let mut table = Table::new(&head, &[0, 7]);
+    let own = evidence.results.iter().filter(|result| result.instance == instance);
+    table.rows = own.map(row).collect();
+    table
+}
+
+fn row(result: &RivalResult) -> Vec<String> {
+    let number = |value: Option<f64>| value.map_or_else(|| "–".to_owned(), short);
+    let search = result.search.as_ref();
+    let status = match result.status {
+        Status::Optimal => "optimal",
+        Status::Infeasible => "infeasible",
+        Status::Unbounded => "unbounded",
+        Status::Limit => "stopped by a limit",
+        Status::Error => "could not be run",
+    };
+    let gap = search.and_then(|search| search.gap).filter(|gap| *gap > 0.0);
+    let gap = gap.map_or_else(String::new, |gap| format!(", gap {}", percent(gap)));
+    vec![
+        format!("{} {}", result.rival, result.title),
+        count(u64::from(result.rows)),
+        count(u64::from(result.columns)),
+        number(result.root.as_ref().and_then(|root| root.bound)),
+        number(search.and_then(|search| search.bound)),
+        number(search.and_then(|search| search.incumbent)),
+        search.map_or_else(|| "–".to_owned(), |search| count(u64::from(search.nodes))),
+        format!("{status}{gap}"),
+    ]
+}
+
+fn section(instance: &str, section: Section) -> Vec<Block> {
+    let on = if instance.is_empty() { String::new() } else { format!(" ({instance})") };
+    let mut out = vec![Block::Minor(format!("{}{on}", section.heading))];
+    out.extend(section.verdict.into_iter().map(Block::Text));
+    out.extend(section.table.map(Block::Table));
+    out.extend(section.notes.into_iter().map(Block::Text));
+    out
+}
+
+/// The notation of each rival.
+fn statements(evidence: &Evidence<'_>) -> Vec<Block> {
+    let texts = evidence.statements.iter().enumerate().filter(|(_, text)| !text.is_empty());
+    let mut out: Vec<Block> = texts
+        .flat_map(|(place, text)| {
+            [Block::Minor(format!("Rival {}", letter(place))), Block::Code(text.clone())]
+        })
+        .collect();
+    if !out.is_empty() {
+        out.insert(0, Block::Heading("The formulations".to_owned()));
+    }
+    out
+}
+
+fn reproduce(evidence: &Evidence<'_>) -> Vec<Block> {
+    let mut out = vec![
+        Block::Heading("How to see the same".to_owned()),
+        Block::Text(format!(
+            "Made by Hullward {}. The scenario file gives the same numbers on every machine: \
+             hullward run, or open it in the page.",
+            evidence.engine
+        )),
+    ];
+    if !evidence.link.is_empty() {
+        out.push(Block::Text("Behind the page's address:".to_owned()));
+        out.push(Block::Code(evidence.link.to_owned()));
+    }
+    out
+}
+
+#[cfg(test)]
+mod tests;

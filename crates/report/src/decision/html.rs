@@ -1,0 +1,92 @@
+//! The record as HTML: one file, no script, nothing fetched. Every text is escaped.
+
+use std::fmt::Write;
+
+use super::Block;
+use crate::study::Table;
+
+/// Paper first: a serif, thin rules, page breaks that keep tables whole.
+const STYLE: &str = "\
+:root{color-scheme:light dark}\
+body{max-width:46rem;margin:2rem auto;padding:0 1rem;font:16px/24px Charter,'Bitstream Charter','Source Serif 4',Georgia,serif}\
+h1{font-size:28px;line-height:36px;margin:0 0 16px}\
+h2{font-size:19px;line-height:28px;margin:32px 0 8px;padding-top:8px;border-top:1px solid #8884}\
+h3{font-size:16px;line-height:24px;margin:20px 0 4px}\
+p,ul{margin:4px 0 8px}ul{padding-left:20px}p{white-space:pre-line}\
+.scroll{overflow-x:auto}\
+table{border-collapse:collapse;margin:8px 0;font:13px/20px system-ui,sans-serif;font-variant-numeric:tabular-nums}\
+th,td{padding:3px 10px 3px 0;border-bottom:1px solid #8884;text-align:right;font-weight:400;vertical-align:top}\
+th.w,td.w{text-align:left}thead th{opacity:.7}\
+pre{overflow-x:auto;margin:8px 0;padding:8px;border:1px solid #8884;font:13px/18px ui-monospace,monospace;white-space:pre-wrap;overflow-wrap:anywhere}\
+@media print{body{max-width:none;margin:0;font-size:10.5pt;line-height:15pt}h2,h3{break-after:avoid}table,pre,li{break-inside:avoid}a{color:inherit}}\
+@page{margin:20mm}";
+
+pub(super) fn document(blocks: &[Block]) -> String {
+    let title = blocks.iter().find_map(|block| match block {
+        Block::Title(title) => Some(title.as_str()),
+        _ => None,
+    });
+    let mut out = format!(
+        "<!doctype html>\n<html lang=\"en\">\n<head>\n<meta charset=\"utf-8\">\n\
+         <meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">\n\
+         <meta http-equiv=\"Content-Security-Policy\" content=\"default-src 'none'; style-src 'unsafe-inline'\">\n\
+         <title>{}</title>\n<style>{STYLE}</style>\n</head>\n<body>\n",
+        escaped(title.unwrap_or_default())
+    );
+    for block in blocks {
+        write_block(block, &mut out);
+    }
+    out.push_str("</body>\n</html>\n");
+    out
+}
+
+fn write_block(block: &Block, out: &mut String) {
+    let tag = |tag: &str, text: &str| format!("<{tag}>{}</{tag}>\n", escaped(text));
+    match block {
+        Block::Title(text) => out.push_str(&tag("h1", text)),
+        Block::Heading(text) => out.push_str(&tag("h2", text)),
+        Block::Minor(text) => out.push_str(&tag("h3", text)),
+        Block::Text(text) => out.push_str(&tag("p", text)),
+        Block::Code(text) => out.push_str(&tag("pre", text)),
+        Block::List(items) => {
+            let items: String = items.iter().map(|item| tag("li", item)).collect();
+            // Writing to a string cannot fail.
+            let _ = write!(out, "<ul>\n{items}</ul>\n");
+        }
+        Block::Table(table) => write_table(table, out),
+    }
+}
+
+fn write_table(table: &Table, out: &mut String) {
+    let class = |column: usize| if table.words.contains(&column) { " class=\"w\"" } else { "" };
+    let cells = |cells: &[String], tag: &str| -> String {
+        let cell = |(column, cell): (usize, &String)| {
+            format!("<{tag}{}>{}</{tag}>", class(column), escaped(cell))
+        };
+        cells.iter().enumerate().map(cell).collect()
+    };
+    // Writing to a string cannot fail.
+    let _ = write!(
+        out,
+        "<div class=\"scroll\"><table>\n<thead><tr>{}</tr></thead>\n<tbody>\n",
+        cells(&table.head, "th")
+    );
+    for row in &table.rows {
+        let _ = writeln!(out, "<tr>{}</tr>", cells(row, "td"));
+    }
+    out.push_str("</tbody>\n</table></div>\n");
+}
+
+pub(super) fn escaped(text: &str) -> String {
+    let mut out = String::with_capacity(text.len());
+    for letter in text.chars() {
+        match letter {
+            '&' => out.push_str("&amp;"),
+            '<' => out.push_str("&lt;"),
+            '>' => out.push_str("&gt;"),
+            '"' => out.push_str("&quot;"),
+            other => out.push(other),
+        }
+    }
+    out
+}

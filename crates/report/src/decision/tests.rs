@@ -1,0 +1,85 @@
+//! A record of figures that are known.
+
+use record::results::{Proof, RivalResult, RootReport, SearchReport, Status};
+use record::scenario::{Rival, Scenario};
+use record::study::{Equivalence, EquivalenceKind, EquivalenceLevel, Report};
+
+use super::{Evidence, html, markdown};
+
+fn result(rival: &str, bound: f64, nodes: u32) -> RivalResult {
+    RivalResult {
+        rival: rival.to_owned(),
+        title: format!("Rival <{rival}>"),
+        status: Status::Optimal,
+        rows: 1_234,
+        root: Some(RootReport { bound: Some(bound), proof: Proof::Exact, ..RootReport::default() }),
+        search: Some(SearchReport {
+            status: Status::Optimal,
+            bound: Some(214.0),
+            incumbent: Some(214.0),
+            gap: Some(0.0),
+            nodes,
+            checked: true,
+            ..SearchReport::default()
+        }),
+        ..RivalResult::default()
+    }
+}
+
+fn made(of: impl Fn(&Evidence<'_>) -> String) -> String {
+    let rivals = vec![
+        Rival { from: Some("atsp/labels".to_owned()), ..Rival::default() },
+        Rival { from: Some("atsp/subtours".to_owned()), ..Rival::default() },
+    ];
+    let notes = "Which one?\n\n<script>alert(1)</script>".to_owned();
+    let scenario = Scenario { title: "A & B".to_owned(), notes, rivals, ..Scenario::default() };
+    let verdict = Equivalence {
+        rivals: ["A".to_owned(), "B".to_owned()],
+        equivalent: Some(true),
+        level: EquivalenceLevel::Enumerated,
+        kind: EquivalenceKind::Sets,
+        ..Equivalence::default()
+    };
+    of(&Evidence {
+        scenario: &scenario,
+        results: &[result("A", 151.2, 431), result("B", 208.5, 9)],
+        studies: &[(String::new(), Report::Equivalence(Box::new(verdict)))],
+        facts: &["18 stops".to_owned()],
+        statements: &["x ≤ 1 | y".to_owned(), String::new()],
+        engine: "0.1.0",
+        link: "#s1.abc",
+    })
+}
+
+#[test]
+fn every_figure_of_the_findings_stands_in_the_record() {
+    let text = made(markdown);
+    for sentence in [
+        "# A & B",
+        "- A: root bound 151.2, checked; optimum 214 after 431 nodes, every leaf checked.",
+        "- A and B admit the same plans: every plan of sub-instances was compared",
+        "- a plan on which A and B differ: none was found, not all were tried",
+        "- an instance of another size: growth was not studied",
+        "| B Rival <B> | 1,234 | 0 | 208.5 | 214 | 214 | 9 | optimal |",
+        "#s1.abc",
+        "come first.",
+    ] {
+        assert!(text.contains(sentence), "{sentence}\n{text}");
+    }
+}
+
+#[test]
+fn what_was_typed_stays_text() {
+    let page = made(html);
+    assert!(page.contains("&lt;script&gt;") && !page.contains("<script"), "{page}");
+    assert!(page.contains("<title>A &amp; B</title>"));
+    assert!(page.contains("default-src 'none'"));
+    for tag in ["p", "ul", "li", "table", "h2", "pre"] {
+        let count = |mark: &str| page.matches(mark).count();
+        assert_eq!(
+            count(&format!("<{tag}>")) + count(&format!("<{tag} ")),
+            count(&format!("</{tag}>")),
+            "{tag}"
+        );
+    }
+}

@@ -12,8 +12,8 @@ use crate::load::{Loaded, formulation, load, states};
 use crate::readings::Readings;
 
 /// The kinds of study there are.
-pub const KINDS: [&str; 7] =
-    ["ladder", "families", "equivalence", "order", "tightening", "numerics", "growth"];
+pub const KINDS: [&str; 8] =
+    ["ladder", "families", "equivalence", "order", "tightening", "cuts", "numerics", "growth"];
 
 /// A study on its way.
 #[derive(Debug)]
@@ -90,6 +90,7 @@ fn begun(
             "tightening" => {
                 vec![Report::Tightening(study::tightening::tightening(desk, subjects, plan).await)]
             }
+            "cuts" => vec![Report::Cuts(study::cuts::cuts(desk, subjects, plan).await)],
             "numerics" => {
                 vec![Report::Numerics(study::numerics::numerics(desk, subjects, plan).await)]
             }

@@ -1,6 +1,7 @@
 //! What studies find: the objects of `hullward run --json` that begin with `"study"`. Field names
 //! are fixed; new ones may be added. They are also sent between workers, so no field is left out.
 
+mod cuts;
 mod equivalence;
 mod families;
 mod growth;
@@ -11,6 +12,7 @@ mod tightening;
 
 use serde::{Deserialize, Serialize, Serializer};
 
+pub use cuts::{ClassGain, CutAdvice, RivalCuts};
 pub use equivalence::{
     Counterexample, Equivalence, EquivalenceKind, EquivalenceLevel, Evidence, Mutant,
 };
@@ -36,6 +38,8 @@ pub enum Report {
     Tightening(Tightening),
     /// Coefficients: their range, and how much can leak through them.
     Numerics(Numerics),
+    /// What each class of general cuts gains.
+    Cuts(CutAdvice),
     /// How rivals compare as instances grow.
     Growth(Box<Growth>),
     /// A study that could not be made, and why.
@@ -58,6 +62,7 @@ impl Report {
             Self::Order(_) => "order",
             Self::Tightening(_) => "tightening",
             Self::Numerics(_) => "numerics",
+            Self::Cuts(_) => "cuts",
             Self::Growth(_) => "growth",
             Self::Left { kind, .. } => kind,
         }
@@ -86,6 +91,7 @@ impl Serialize for Line<'_> {
             Report::Order(report) => self.named(report, serializer),
             Report::Tightening(report) => self.named(report, serializer),
             Report::Numerics(report) => self.named(report, serializer),
+            Report::Cuts(report) => self.named(report, serializer),
             Report::Growth(report) => self.named(report.as_ref(), serializer),
             Report::Left { why, .. } => self.named(&LeftOut { left_out: why }, serializer),
         }

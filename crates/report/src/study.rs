@@ -1,6 +1,7 @@
 //! What studies found, as sections of words and tables: the command prints them, the page and the
 //! decision record set them. Every sentence is made from the figures of the report.
 
+mod cuts;
 mod equivalence;
 mod families;
 mod growth;
@@ -54,6 +55,7 @@ pub fn sections(report: &Report) -> Vec<Section> {
         Report::Order(report) => vec![order::section(report)],
         Report::Tightening(report) => tightening::sections(report),
         Report::Numerics(report) => numerics::sections(report),
+        Report::Cuts(report) => cuts::sections(report),
         Report::Growth(report) => growth::sections(report),
         Report::Left { kind, why } => {
             let verdict = vec![format!("left out: {why}")];

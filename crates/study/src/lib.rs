@@ -4,6 +4,7 @@
 //! |---|---|
 //! | [`mod@ladder`] | how far each step lifts a rival's bound |
 //! | [`mod@families`] | which constraint families the bound comes from |
+//! | [`mod@cuts`] | which classes of general cuts are worth their rows |
 //! | [`court`] | whether two rivals are the same problem |
 //! | [`mod@order`] | which of two relaxations is stronger, and how far that is known |
 //! | [`mod@tightening`] | how small the coefficients of switches can be |
@@ -14,6 +15,7 @@
 //! slices as a [`Running`]. No study reads a clock; limits are counts of nodes, rows and trials.
 
 pub mod court;
+pub mod cuts;
 pub mod desk;
 pub mod families;
 pub mod growth;

@@ -260,3 +260,24 @@ subject to
     assert!((rival.leak.0 - 10.0).abs() < 1e-9 && rival.leak.1 == "switch[a]", "{rival:?}");
     assert!(rival.verdicts.iter().any(|verdict| verdict.contains("switch[a]")), "{rival:?}");
 }
+
+#[test]
+fn few_classes_of_cuts_are_chosen_that_gain_most_of_what_all_gain() {
+    let data = stops(9);
+    let subjects = vec![shipped("A", "atsp/labels", &data)];
+    let again = subjects.clone();
+    let found =
+        driven(50_000, |desk| crate::cuts::cuts(desk, subjects, Plan::default())).rivals.remove(0);
+    let (bound, all) = (found.bound.expect("a bound"), found.with_all.expect("a bound"));
+    // Cuts raise the bound of a shortest round, never over the optimum.
+    let optimum = driven(50_000, |desk| async move {
+        desk.solve(&again[0].model, Plan::default().search()).await.incumbent
+    });
+    assert!(bound < all && optimum.is_some_and(|optimum| all <= optimum + 1e-6), "{found:?}");
+    let (_, reached) = found.chosen.last().expect("some class gains").clone();
+    assert!(reached - bound >= 0.9 * (all - bound) - 1e-9, "{found:?}");
+    assert!(found.chosen.len() <= found.classes.len());
+    for class in &found.classes {
+        assert!(class.added > 0 && !found.idle.contains(&class.class), "{class:?}");
+    }
+}

@@ -11,7 +11,7 @@ use yew::Reducible;
 use crate::state::document::Document;
 
 /// The kinds, each with its question and what is done to answer it.
-pub(crate) const KINDS: [(&str, &str, &str); 7] = [
+pub(crate) const KINDS: [(&str, &str, &str); 8] = [
     (
         "equivalence",
         "Are the rivals the same problem?",
@@ -39,6 +39,11 @@ pub(crate) const KINDS: [(&str, &str, &str); 7] = [
         "tightening",
         "Which coefficients could be smaller?",
         "The least that can be proved for each row that a binary switches, and what it buys.",
+    ),
+    (
+        "cuts",
+        "Which general cuts are worth their rows?",
+        "Each class alone, and the fewest that gain nine tenths of what all gain.",
     ),
     (
         "growth",

@@ -36,6 +36,9 @@ mod answering;
 #[path = "page/editing.rs"]
 mod editing;
 
+#[path = "page/studies.rs"]
+mod studies;
+
 #[path = "page/typeset.rs"]
 mod typeset;
 

@@ -62,6 +62,23 @@ impl Found {
         self.0.iter().map(result).collect()
     }
 
+    /// The results with their letters, titles and endings, as a record names them.
+    pub(crate) fn on_record(&self, document: &Document) -> Vec<RivalResult> {
+        let slots = document.slots.iter().enumerate();
+        let named = slots.zip(self.results()).map(|((place, slot), result)| {
+            let ended = result.search.as_ref().map(|search| search.status);
+            let ended = ended.or(result.root.as_ref().map(|root| root.status));
+            RivalResult {
+                rival: Document::letter(place),
+                title: document.rival_title(&slot.rival),
+                status: ended.unwrap_or_default(),
+                relaxation: document.is_relaxation(&slot.rival),
+                ..result
+            }
+        });
+        named.collect()
+    }
+
     /// Its digest; `None` where nothing is found yet.
     pub(crate) fn digest(&self) -> Option<String> {
         digest(&self.results())

@@ -4,8 +4,10 @@ use std::collections::BTreeMap;
 use std::rc::Rc;
 
 use record::file;
+use record::results::RivalResult;
 use record::scenario::{Scenario, Study};
 use record::study::Report;
+use report::decision::{self, Evidence};
 use yew::Reducible;
 
 use crate::state::document::Document;
@@ -129,6 +131,41 @@ pub(crate) fn scenario_of(document: &Document, kind: &str) -> String {
     })
 }
 
+/// The decision record of what the page has found: HTML, or Markdown. Answers to an earlier state of
+/// the scenario are left out.
+pub(crate) fn on_record(
+    document: &Document,
+    results: &[RivalResult],
+    shelf: &Shelf,
+    html: bool,
+) -> String {
+    let mut studies = Vec::new();
+    for (kind, ..) in KINDS {
+        let found = shelf.found.get(kind).filter(|found| *found.of == *scenario_of(document, kind));
+        if let Some(Ok(reports)) = found.map(|found| &found.reports) {
+            studies.extend(reports.iter().map(|report| (String::new(), report.clone())));
+        }
+    }
+    let scenario = document.scenario();
+    let texts = scenario.rivals.iter().map(|rival| {
+        let shipped = document.entry(rival).map(|entry| entry.text.clone());
+        rival.text.clone().or(shipped).unwrap_or_default()
+    });
+    let statements: Vec<String> = texts.collect();
+    let link = record::link::pack(&document.file()).unwrap_or_default();
+    let facts = document.accepted.as_ref().map(|accepted| accepted.report.facts.clone());
+    let evidence = Evidence {
+        scenario: &scenario,
+        results,
+        studies: &studies,
+        facts: &facts.unwrap_or_default(),
+        statements: &statements,
+        engine: env!("CARGO_PKG_VERSION"),
+        link: if link.len() > record::link::OFTEN_CUT { "" } else { &link },
+    };
+    if html { decision::html(&evidence) } else { decision::markdown(&evidence) }
+}
+
 impl Document {
     /// A study belongs to the scenario from now on.
     pub(crate) fn with_study(&mut self, kind: &str) {
@@ -157,6 +194,21 @@ mod tests {
         document.with_study("ladder");
         document.with_study("ladder");
         assert_eq!(document.scenario().studies.len(), demo().studies.len() + 1);
+    }
+
+    #[test]
+    fn a_record_holds_the_rivals_and_no_stale_answer() {
+        let document = Document::open(demo());
+        let mut shelf = Shelf::default();
+        let left =
+            |why: &str| Ok(vec![Report::Left { kind: "order".to_owned(), why: why.to_owned() }]);
+        let now = scenario_of(&document, "order");
+        shelf.found.insert("order", Rc::new(Found { of: now.into(), reports: left("fresh") }));
+        shelf.found.insert("ladder", Rc::new(Found { of: "".into(), reports: left("stale") }));
+        let text = on_record(&document, &[], &shelf, false);
+        assert!(text.contains("left out: fresh") && !text.contains("stale"), "{text}");
+        assert!(text.contains("- B: ") && text.contains("#s1."), "{text}");
+        assert!(on_record(&document, &[], &shelf, true).starts_with("<!doctype html>"));
     }
 
     #[test]

@@ -43,7 +43,7 @@ pub(crate) fn Evidence(props: &EvidenceProps) -> Html {
                    checked to within an amount where what is proved is a bound that far from the figure. \
                    Node counts with + are of a search that is not finished." }
             </p>
-            <Studies document={document.clone()} />
+            <Studies document={document.clone()} board={board.clone()} />
             <p class="prose caution">
                 { "A plan that comes out of a model is a decision aid: the driving, working-time, energy and safety rules \
                    of the place, and the people licensed to apply them, come first." }

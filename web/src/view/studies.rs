@@ -4,14 +4,19 @@ use record::study::Report;
 use report::study::{Section, Table, sections};
 use yew::prelude::*;
 
+use crate::browser::share::download;
 use crate::browser::studying::Studying;
+use crate::state::board::Board;
 use crate::state::document::{Document, DocumentAction};
-use crate::state::studies::{Found, KINDS, Shelf, scenario_of};
+use crate::state::same::Found;
+use crate::state::share::file_of;
+use crate::state::studies::{Found as Answer, KINDS, Shelf, on_record, scenario_of};
 use crate::view::hands::use_hands;
 
-#[derive(Properties, PartialEq)]
+#[derive(Properties, PartialEq, Clone)]
 pub(crate) struct StudiesProps {
     pub(crate) document: Document,
+    pub(crate) board: Board,
 }
 
 /// All studies.
@@ -25,6 +30,7 @@ pub(crate) fn Studies(props: &StudiesProps) -> Html {
         return Html::default();
     }
     html! {
+        <>
         for (kind, question, how) in KINDS {
             <div class="study" key={kind} data-study={kind}>
                 { head(document, &shelf, kind, question, {
@@ -46,6 +52,36 @@ pub(crate) fn Studies(props: &StudiesProps) -> Html {
                 { body(document, &shelf, kind, how) }
             </div>
         }
+        { decision_record(props, &shelf) }
+        </>
+    }
+}
+
+/// The record of all that the page has found, saved as a file.
+fn decision_record(props: &StudiesProps, shelf: &Shelf) -> Html {
+    let save = |html: bool| {
+        let (StudiesProps { document, board }, shelf) = (props.clone(), shelf.clone());
+        Callback::from(move |_: MouseEvent| {
+            let results = Found::on(&document, &board).on_record(&document);
+            let text = on_record(&document, &results, &shelf, html);
+            let ending = if html { "decision.html" } else { "decision.md" };
+            download(&file_of(&document.title, ending), &text);
+        })
+    };
+    html! {
+        <div class="study">
+            <div class="heading">
+                <h3>{ "Decision record" }</h3>
+                <span class="row">
+                    <button type="button" data-testid="record-html" onclick={save(true)}>{ "Save to print" }</button>
+                    <button type="button" data-testid="record-markdown" onclick={save(false)}>{ "Save as Markdown" }</button>
+                </span>
+            </div>
+            <p class="soft">
+                { "The question, the instance, what was found and answered above, what would reopen the decision, \
+                   the formulations, and how to see the same." }
+            </p>
+        </div>
     }
 }
 
@@ -100,7 +136,7 @@ fn body(document: &Document, shelf: &Shelf, kind: &'static str, how: &str) -> Ht
     }
 }
 
-fn results(found: &Found) -> Html {
+fn results(found: &Answer) -> Html {
     match &found.reports {
         Err(why) => html! { <p class="warn">{ format!("It could not be made: {why}.") }</p> },
         Ok(reports) => reports.iter().flat_map(sections_of).collect(),

@@ -49,7 +49,7 @@ hullward: rival integer formulations side by side on your own data.
   hullward run FILE…      run the rivals of scenarios: bounds, trees, solutions
   hullward read FILE      what is understood of an instance, with every complaint
   hullward write FILE     a rival as MPS, LaTeX or notation, or the scenario
-  hullward list [ID]      the shipped formulations, or the text of one
+  hullward list [ID]      the shipped formulations, or the text of one; a word finds some
   hullward digest FILE    one line a rival that two machines can compare
   hullward cells FILE     the numbered cells of a growth study, for a batch queue
   hullward gather RESULT… what its cells gave, summed up as one study
@@ -122,10 +122,11 @@ should know goes to standard error.
 ";
 
 const LIST: &str = "\
-hullward list [ID]
+hullward list [ID or WORDS]
 
 Lists the shipped formulations with their citations; with an ID, such as
-atsp/labels, prints the text of that one, ready to be changed.
+atsp/labels, prints what is known of that one and its text, ready to be changed.
+Other words, in quotes if there are several, list those that hold them all.
 ";
 
 const DIGEST: &str = "\

@@ -1,4 +1,4 @@
-//! `hullward list`: the shipped formulations.
+//! `hullward list`: the shipped formulations, those that hold some words, or one in full.
 
 use std::io::{Result, Write};
 
@@ -14,6 +14,11 @@ pub(crate) fn list(id: Option<&str>, out: &mut dyn Write, err: &mut dyn Write) -
         return every(&entries, out).map(|()| Ending::Done);
     };
     let Some(entry) = entries.iter().find(|entry| entry.id == id) else {
+        let found: Vec<CatalogueEntry> =
+            entries.iter().filter(|entry| entry.holds(id)).cloned().collect();
+        if !found.is_empty() {
+            return every(&found, out).map(|()| Ending::Done);
+        }
         let known: Vec<&str> = entries.iter().map(|entry| entry.id.as_str()).collect();
         let hint = nearest(id, &known)
             .map_or_else(|| "see hullward list".to_owned(), |near| format!("did you mean {near}?"));
@@ -24,6 +29,12 @@ pub(crate) fn list(id: Option<&str>, out: &mut dyn Write, err: &mut dyn Write) -
     if entry.relaxation {
         writeln!(out, "# a relaxation: bounded, not compared for its optimum")?;
     }
+    writeln!(out, "# size: {}", entry.size)?;
+    writeln!(out, "# right for: {}", entry.assumption)?;
+    for known in &entry.known {
+        writeln!(out, "# bound: {known}")?;
+    }
+    writeln!(out, "# pitfall: {}", entry.pitfall)?;
     writeln!(out, "{}", entry.text.trim_end())?;
     Ok(Ending::Done)
 }

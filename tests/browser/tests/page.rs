@@ -60,6 +60,9 @@ mod keeping;
 #[path = "page/steering.rs"]
 mod steering;
 
+#[path = "page/shelf.rs"]
+mod shelf;
+
 #[path = "page/hostile.rs"]
 mod hostile;
 

@@ -71,6 +71,8 @@ pub(crate) enum Edit {
     Restore(LaneId),
     /// A copy of the rival joins.
     Duplicate(LaneId),
+    /// A copy of the shipped formulation of that id joins, to be edited.
+    Copy(String),
     /// An own rival joins, with what a formulation begins with.
     Write,
 }
@@ -81,7 +83,7 @@ impl Edit {
         match self {
             Self::Use(..) => "formulation",
             Self::Restore(_) => "return to the shipped text",
-            Self::Duplicate(_) => "copy of a rival",
+            Self::Duplicate(_) | Self::Copy(_) => "copy of a rival",
             Self::Write => "own rival",
         }
     }
@@ -91,7 +93,7 @@ impl Document {
     /// Carries an edit out; a lane that is gone, or a text that is unsound, changes nothing.
     pub(crate) fn edit(&mut self, edit: Edit) {
         match edit {
-            Edit::Duplicate(_) if self.is_full() => {}
+            Edit::Duplicate(_) | Edit::Copy(_) if self.is_full() => {}
             Edit::Use(id, draft, report) if report.is_sound() => {
                 if let Some(slot) = self.slot(id) {
                     slot.take(draft, &report.families);
@@ -115,6 +117,7 @@ impl Document {
                     copy.shipped = slot.shipped;
                 }
             }
+            Edit::Copy(id) => self.copy(id),
             Edit::Write => self.push(Rival {
                 text: Some(SCAFFOLD.to_owned()),
                 role: Some(Role::Relaxation),
@@ -122,6 +125,27 @@ impl Document {
                 ..Rival::default()
             }),
         }
+    }
+
+    /// A text of one's own that is still that of the shipped formulation.
+    fn copy(&mut self, id: String) {
+        let Some(entry) = self.catalogue.iter().find(|entry| entry.id == id) else { return };
+        let rival = Rival {
+            text: Some(entry.text.clone()),
+            role: entry.relaxation.then_some(Role::Relaxation),
+            title: format!("{} (copy)", entry.title.split(" (").next().unwrap_or_default()),
+            ..Rival::default()
+        };
+        self.push(rival);
+        if let Some(slot) = self.slots.last_mut() {
+            slot.shipped = Some(Shared::new(Rival { from: Some(id), ..Rival::default() }));
+        }
+    }
+
+    /// Whether a rival is a copy of a shipped formulation in which nothing was changed.
+    pub(crate) fn is_fresh_copy(&self, slot: &Slot) -> bool {
+        let shipped = slot.shipped.as_ref().and_then(|shipped| self.entry(shipped));
+        shipped.is_some_and(|entry| slot.rival.text.as_ref() == Some(&entry.text))
     }
 
     /// Finds what texts were before they were edited: the shipped formulation that has the title
@@ -178,10 +202,8 @@ mod tests {
         document.catalogue = Shared::new(vec![CatalogueEntry {
             id: "a/b".to_owned(),
             title: "Labels".to_owned(),
-            family: String::new(),
-            relaxation: false,
-            citation: String::new(),
             text: "min x".to_owned(),
+            ..CatalogueEntry::default()
         }]);
         document
     }
@@ -265,6 +287,18 @@ mod tests {
     #[test]
     fn an_own_rival_begins_as_a_relaxation() {
         let mut document = document();
+        document.edit(Edit::Copy("a/b".to_owned()));
+        let copy = document.slots[2].clone();
+        assert_eq!(
+            (copy.rival.title.as_str(), copy.rival.text.as_deref()),
+            ("Labels (copy)", Some("min x"))
+        );
+        assert!(document.is_fresh_copy(&copy) && !document.is_fresh_copy(&document.slots[0]));
+        document.edit(Edit::Restore(copy.id));
+        assert_eq!(document.slots[2].rival.from.as_deref(), Some("a/b"));
+        document.edit(Edit::Copy("no/such".to_owned()));
+        assert_eq!(document.slots.len(), 3);
+        document.slots.pop();
         document.edit(Edit::Write);
         let slot = document.slots[2].clone();
         assert!(slot.is_scaffold() && document.is_relaxation(&slot.rival));

@@ -53,6 +53,8 @@ pub(crate) struct LaneProps {
     pub(crate) axis: Option<Axis>,
     pub(crate) width: f64,
     pub(crate) best: Option<f64>,
+    /// Whether it is a copy of a shipped formulation in which nothing was changed yet.
+    pub(crate) copied: bool,
     pub(crate) selected: Option<NodeNumber>,
 }
 
@@ -61,7 +63,7 @@ pub(crate) struct LaneProps {
 pub(crate) fn LaneView(props: &LaneProps) -> Html {
     let hands = use_hands();
     use_loading(props, hands.clone());
-    let writing = use_state_eq(|| props.slot.is_scaffold());
+    let writing = use_state_eq(|| props.slot.is_scaffold() || props.copied);
     html! {
         <section
             class={classes!("lane", format!("hue-{}", props.hue))} data-testid="lane"

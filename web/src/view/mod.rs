@@ -37,6 +37,7 @@ pub(crate) mod rule;
 pub(crate) mod ruler;
 pub(crate) mod second;
 pub(crate) mod share;
+mod shelf;
 pub(crate) mod statistics;
 pub(crate) mod steering;
 mod studies;

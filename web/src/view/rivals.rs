@@ -17,12 +17,16 @@ use crate::view::axis::{AxisView, Best};
 use crate::view::hands::{Hands, use_hands};
 use crate::view::lane::LaneView;
 use crate::view::rule::rules;
+use crate::view::shelf::Shelf;
 
 /// Hues, after which they come again.
 pub(crate) const HUES: usize = 6;
 
 /// The id of the heading, where the focus goes when a rival leaves.
 pub(crate) const HEADING: &str = "rivals-heading";
+
+/// The id of what holds the catalogue.
+const SHELF: &str = "shelf";
 
 /// Pixels of axis a labelled tick wants.
 const TICK: f64 = 110.0;
@@ -59,7 +63,7 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
                     key={slot.id.0} slot={slot.clone()} letter={Document::letter(place)}
                     hue={place % HUES} title={document.rival_title(&slot.rival)}
                     source={document.rival_source(&slot.rival)} relaxation={document.is_relaxation(&slot.rival)}
-                    draft={Draft::of(&slot.rival, &document.catalogue)}
+                    draft={Draft::of(&slot.rival, &document.catalogue)} copied={document.is_fresh_copy(slot)}
                     lane={board.lane(slot.id)} run={document.run.clone()} seed={document.seed}
                     text={document.instance_of(slot)}
                     {axis} {width} best={best.as_ref().map(|best| best.value)}
@@ -70,10 +74,16 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
             if document.is_full() {
                 <p class="small soft">{ format!("{MOST_RIVALS} rivals: a scenario holds no more.") }</p>
             } else {
-                <AddRival catalogue={document.catalogue.clone()} />
+                <AddRival catalogue={document.catalogue.clone()} family={family(document)} />
             }
         </section>
     }
+}
+
+/// The family of the first rival that is shipped.
+fn family(document: &Document) -> Option<String> {
+    let mut entries = document.slots.iter().filter_map(|slot| document.entry(&slot.rival));
+    entries.next().map(|entry| entry.family.clone())
 }
 
 fn heading(document: &Document) -> String {
@@ -185,7 +195,9 @@ fn Key() -> Html {
 }
 
 /// The entries with their place in the catalogue, family by family in the order of the catalogue.
-fn by_family(catalogue: &[CatalogueEntry]) -> Vec<(&str, Vec<(usize, &CatalogueEntry)>)> {
+pub(crate) fn by_family(
+    catalogue: &[CatalogueEntry],
+) -> Vec<(&str, Vec<(usize, &CatalogueEntry)>)> {
     let mut families: Vec<(&str, Vec<_>)> = Vec::new();
     for (place, entry) in catalogue.iter().enumerate() {
         match families.iter_mut().find(|(family, _)| *family == entry.family) {
@@ -207,12 +219,14 @@ fn choice(entry: &CatalogueEntry, selected: bool) -> Html {
 #[derive(Properties, PartialEq)]
 struct AddProps {
     catalogue: Shared<Vec<CatalogueEntry>>,
+    family: Option<String>,
 }
 
 #[component]
 fn AddRival(props: &AddProps) -> Html {
     let hands = use_hands();
     let select = use_node_ref();
+    let browsing = use_state_eq(|| false);
     if props.catalogue.is_empty() {
         return Html::default();
     }
@@ -233,7 +247,10 @@ fn AddRival(props: &AddProps) -> Html {
             }
         })
     };
+    let (browsed, shown) = (browsing.setter(), *browsing);
+    let browse = Callback::from(move |_: MouseEvent| browsed.set(!shown));
     html! {
+        <>
         <div class="row add">
             <label class="field">
                 { "Another rival" }
@@ -247,7 +264,15 @@ fn AddRival(props: &AddProps) -> Html {
             </label>
             <button type="button" data-testid="add" onclick={add}>{ "Add" }</button>
             <button type="button" data-testid="write" onclick={write}>{ "Write my own" }</button>
+            <button
+                type="button" data-testid="browse" aria-expanded={if shown { "true" } else { "false" }}
+                aria-controls={SHELF} onclick={browse}
+            >{ "Look through the catalogue" }</button>
         </div>
+        <div id={SHELF} hidden={!shown}>
+            if shown { <Shelf catalogue={props.catalogue.clone()} family={props.family.clone()} /> }
+        </div>
+        </>
     }
 }
 
@@ -259,11 +284,8 @@ mod tests {
     fn entries_are_grouped_in_the_order_of_the_catalogue() {
         let entry = |id: &str, family: &str| CatalogueEntry {
             id: id.to_owned(),
-            title: String::new(),
             family: family.to_owned(),
-            relaxation: false,
-            citation: String::new(),
-            text: String::new(),
+            ..CatalogueEntry::default()
         };
         let catalogue = [entry("a", "round"), entry("b", "path"), entry("c", "round")];
         let places = |entries: &[(usize, &CatalogueEntry)]| entries.iter().map(|e| e.0).collect();

@@ -427,6 +427,13 @@ fn list_names_the_catalogue_and_prints_one_text() {
     assert!(out(&all).contains("atsp/labels") && out(&all).contains("atsp/subtours"));
     let one = hullward(&["list", "atsp/labels"], "");
     assert!(out(&one).contains("minimise") && out(&one).contains("1960"), "{}", out(&one));
+    assert!(
+        out(&one).contains("# bound: never weaker than \u{201c}Assignment rows alone"),
+        "{}",
+        out(&one)
+    );
+    let some = hullward(&["list", "cornuejols 1980"], "");
+    assert!(out(&some).contains("ufl/radii") && !out(&some).contains("atsp/"), "{}", out(&some));
     let none = hullward(&["list", "atsp/lables"], "");
     assert_eq!(status(&none), 2);
     assert!(err(&none).contains("did you mean atsp/labels?"), "{}", err(&none));

@@ -196,11 +196,11 @@ const EDITED: &[Edited] = &[
             RESOURCE,
             NEED,
             (
-                "  x_i ≥ Σ_{k ∈ K} B_{i,k−1} y_{i,k}          ∀ i ∈ I ",
+                "  x_i ≥ Σ_{k ∈ K} B_{i,k−1} y_{i,k}         ∀ i ∈ I ",
                 "  x_i ≥ B_{i,k−1} y_{i,k}  ∀ i ∈ I, k ∈ K ",
             ),
             (
-                "  x_i ≤ Σ_{k ∈ K} B_{i,k} y_{i,k}            ∀ i ∈ I ",
+                "  x_i ≤ Σ_{k ∈ K} B_{i,k} y_{i,k}           ∀ i ∈ I ",
                 "  x_i ≤ B_{i,n} − (B_{i,n} − B_{i,k}) y_{i,k}  ∀ i ∈ I, k ∈ K ",
             ),
         ],

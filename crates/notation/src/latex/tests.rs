@@ -112,6 +112,8 @@ fn what_mutation_found_reads_back() {
     both("minimise\n  (a x ≥ b)\n");
     // two names that make one word of the language side by side
     both("minimise\n  x\nsubject to\n  subject · to ≥ 1\n");
+    // a domain is no quantifier, so its letter takes no word apart
+    both("min_ there is\n  s ∈ V\n");
 }
 
 /// `|S| − 1 '''` was read as a power, with a name made of primes for its exponent.

@@ -237,7 +237,8 @@ fn indices(tokens: &[Token], start: usize) -> BTreeSet<char> {
             continue;
         };
         // x ∈ X on a line of its own is a domain
-        if token.gap.has(Gap::NEWLINE) || kind(i.wrapping_sub(1)) == T::Break {
+        let before = kind(i.wrapping_sub(1));
+        if token.gap.has(Gap::NEWLINE) || before == T::Break || before.is_part() {
             continue;
         }
         let limit =

@@ -11,6 +11,7 @@ pub(crate) enum Topic {
     Digest,
     Cells,
     Gather,
+    Prove,
 }
 
 impl Topic {
@@ -24,6 +25,7 @@ impl Topic {
             "digest" => Self::Digest,
             "cells" => Self::Cells,
             "gather" => Self::Gather,
+            "prove" => Self::Prove,
             _ => return None,
         })
     }
@@ -40,6 +42,7 @@ pub(crate) fn text(topic: Topic) -> &'static str {
         Topic::Digest => DIGEST,
         Topic::Cells => CELLS,
         Topic::Gather => GATHER,
+        Topic::Prove => PROVE,
     }
 }
 
@@ -53,6 +56,7 @@ hullward: rival integer formulations side by side on your own data.
   hullward digest FILE    one line a rival that two machines can compare
   hullward cells FILE     the numbered cells of a growth study, for a batch queue
   hullward gather RESULT… what its cells gave, summed up as one study
+  hullward prove LOG      a saved log of a search proved again, leaf by leaf
   hullward help [CALL]    more on one of them
   hullward help CODE      what the code of a complaint means, with an example
   hullward --version      the version of the engine
@@ -76,8 +80,8 @@ prints tables.
   --seconds S     stop each rival after S seconds (0: never) instead of what the
                   scenario says; the clock never changes what is found
   --rival LETTER  run only this rival
-  --log FILE      save the log of its search; the scenario must have one rival, or
-                  --rival must name it
+  --log FILE      save the log of its search, with what hullward prove needs; the
+                  scenario must have one rival, or --rival must name it
   --preset NAME   settings instead of the scenario's: bare (nothing that hides what
                   is compared) or production (as a production solver would: general
                   cuts, node work, reliability branching); limits stay
@@ -163,4 +167,18 @@ hullward gather RESULT… [--json]
 
 Takes what hullward run --cell gave and sums it up: the same study, byte for byte, as
 hullward run makes of the whole scenario. Cells that are missing are named.
+";
+
+const PROVE: &str = "\
+hullward prove LOG [--json]
+
+Proves a search again from the log that hullward run --log saved, on a machine that
+did not run it. The log holds the scenario, so nothing else is needed. Of the search
+nothing is believed: the branchings must leave out no whole value, the plan must meet
+every row and cost what the log says, and each leaf is proved by multipliers or a ray
+worked out anew, in exact arithmetic. General cuts are not used: a leaf that they
+closed is branched on instead.
+
+Exit status: 0 proved; 1 a leaf is open (the search was stopped, or a proof would take
+too long); 2 the log is wrong, with the nodes at which it is.
 ";

@@ -13,6 +13,7 @@ mod help;
 mod list;
 mod options;
 mod progress;
+mod prove;
 mod read;
 mod record;
 mod run;
@@ -57,6 +58,7 @@ fn carry_out(call: &Call, out: &mut dyn Write, err: &mut dyn Write) -> std::io::
         Call::Run(options) => run::run(options, out, err),
         Call::Read(file) => read::read(file, out, err),
         Call::Write(options) => write::write(options, out, err),
+        Call::Prove(options) => prove::prove(options, out, err),
         Call::List(id) => list::list(id.as_deref(), out, err),
         Call::Digest(options) => digest::digest(options, out, err),
         Call::Cells(file) => cells::list(file, out, err),

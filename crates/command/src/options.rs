@@ -19,6 +19,7 @@ pub(crate) enum Call {
     Digest(DigestOptions),
     Cells(String),
     Gather(GatherOptions),
+    Prove(ProveOptions),
 }
 
 /// How `gather` is asked for.
@@ -53,6 +54,14 @@ pub(crate) struct DigestOptions {
     pub(crate) slice: u64,
     /// How often each rival is run on the clock; 0 is once, without one.
     pub(crate) runs: u64,
+}
+
+/// How `prove` is asked for.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) struct ProveOptions {
+    /// The saved log.
+    pub(crate) file: String,
+    pub(crate) json: bool,
 }
 
 /// How `write` is asked for.
@@ -118,7 +127,8 @@ impl Form {
     }
 }
 
-const CALLS: [&str; 8] = ["run", "read", "write", "list", "digest", "cells", "gather", "help"];
+const CALLS: [&str; 9] =
+    ["run", "read", "write", "list", "digest", "cells", "gather", "prove", "help"];
 
 /// The call, or what is wrong with the words.
 pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
@@ -139,6 +149,7 @@ pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
         "digest" => digest(rest),
         "cells" => one(rest, "cells").map(Call::Cells),
         "gather" => gather(rest).map(Call::Gather),
+        "prove" => prove(rest),
         other => Err(unknown("call", other, &CALLS)),
     }
 }
@@ -254,6 +265,13 @@ fn digest(words: &[String]) -> Result<Call, String> {
     one(&files, "digest").map(|file| Call::Digest(DigestOptions { file, slice, runs }))
 }
 
+fn prove(words: &[String]) -> Result<Call, String> {
+    let (flags, files): (Vec<String>, Vec<String>) =
+        words.iter().cloned().partition(|word| word == "--json");
+    let file = one(&files, "prove")?;
+    Ok(Call::Prove(ProveOptions { file, json: !flags.is_empty() }))
+}
+
 fn positive(option: &str, word: &str) -> Result<u64, String> {
     let number = word.parse().ok().filter(|number| *number > 0);
     number.ok_or_else(|| format!("{option} needs a whole number over 0, not {word}"))
@@ -317,6 +335,8 @@ mod tests {
         assert_eq!(call(line), Ok(Call::Write(write)));
         let digest = DigestOptions { file: "a".to_owned(), slice: 99, runs: 3 };
         assert_eq!(call("digest a --slice 99 --runs 3"), Ok(Call::Digest(digest)));
+        let prove = ProveOptions { file: "a.log".to_owned(), json: true };
+        assert_eq!(call("prove a.log --json"), Ok(Call::Prove(prove)));
     }
 
     #[test]
@@ -337,6 +357,8 @@ mod tests {
             "read a b",
             "digest a --slice 0",
             "digest a --runs x",
+            "prove",
+            "prove a b",
             "write a",
             "write --as mps",
             "write a --as mps --instance 0",

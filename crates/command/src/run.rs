@@ -6,6 +6,7 @@ use engine::StudyRun;
 use engine::native::{Phase, RivalRun, USUAL_SLICE, Watch, instance_title, result, run_rival};
 use record::event::Log;
 use record::file::{self, Parsed};
+use record::ground::Ground;
 use record::results::{RivalResult, Status, Timing};
 use record::scenario::{Scenario, Study, letter};
 use record::study::Report;
@@ -167,7 +168,7 @@ impl Job<'_> {
         let (run, one) = run_one(scenario, place);
         self.complain_of(&one, &run, (scenario, parsed, place), err)?;
         if let Some(path) = &self.options.log {
-            save(path, run)?;
+            save(path, run, scenario, place)?;
         }
         if let Some(fault) = verify(&one) {
             writeln!(err, "{}: an internal check failed: {fault}", self.source.name)?;
@@ -274,8 +275,16 @@ fn ending(one: &RivalResult) -> Ending {
     }
 }
 
-fn save(path: &str, run: RivalRun) -> Result<()> {
-    let log = Log { version: 1, engine: engine::VERSION.to_owned(), events: run.events };
+fn save(path: &str, run: RivalRun, scenario: &Scenario, place: (usize, usize)) -> Result<()> {
+    let place_of = |place: usize| u32::try_from(place).unwrap_or(u32::MAX);
+    let ground = run.evidence.map(|evidence| Ground {
+        scenario: file::print(scenario),
+        instance: place_of(place.0),
+        rival: place_of(place.1),
+        evidence,
+    });
+    let version = if ground.is_some() { 2 } else { 1 };
+    let log = Log { version, engine: engine::VERSION.to_owned(), events: run.events, ground };
     let bytes = record::log::encode(&log).map_err(std::io::Error::other)?;
     std::fs::write(path, bytes)
 }

@@ -214,6 +214,9 @@ fn notes(one: &RivalResult) -> Vec<String> {
     notes.extend(one.root.as_ref().and_then(|root| explain::root(root, one.maximise)));
     notes.extend(one.conflict.as_ref().map(explain::conflict));
     notes.extend(one.search.as_ref().and_then(explain::search));
+    if let Some(search) = &one.search {
+        notes.extend(explain::grown(search));
+    }
     notes.extend(one.root.as_ref().and_then(proved));
     let silent_or_not = one.second.as_ref().filter(|second| second.agrees != Some(true));
     notes.extend(silent_or_not.map(|second| second.words.clone()));

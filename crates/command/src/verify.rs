@@ -43,8 +43,7 @@ mod tests {
             solution: Vec::new(),
             checked: false,
             stopped: None,
-            node_work: record::results::NodeWorkReport::default(),
-            cuts: None,
+            ..SearchReport::default()
         };
         RivalResult { search: Some(search), maximise, ..RivalResult::default() }
     }

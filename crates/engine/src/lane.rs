@@ -14,14 +14,16 @@ use std::rc::Rc;
 
 use model::Model;
 use record::message::{LaneJob, Progress, Reply, Request};
-use record::results::{ErrorReport, Status};
+use record::results::{ErrorReport, SearchReport, Status};
 use record::scenario::Act;
-use tree::{Conflict, ConflictLimits, NodeId, Search};
+use tree::{Audit, Conflict, ConflictLimits, NodeId, Search};
 
+use crate::family::suggestions;
 use crate::fault::fault;
 use crate::load::{Loaded, Loading};
 use crate::map::{self, Drawings};
 use crate::outbox::Outbox;
+use crate::plan::Plan;
 use crate::readings::Readings;
 
 /// A word on how far the work is comes at most once in so many non-zeros touched.
@@ -38,6 +40,7 @@ enum Stage {
     Waiting(Box<Solver>),
     Running(Box<Solver>),
     Explaining(Box<Solver>, Box<Conflict>),
+    Auditing(Box<Solver>, Box<Audit>),
     Over(Option<Box<Solver>>),
 }
 
@@ -47,7 +50,16 @@ struct Solver {
     model: Rc<Model>,
     drawings: Drawings,
     search: Search,
+    /// The plan that a person gave.
+    plan: Option<Plan>,
     told: u64,
+}
+
+impl Solver {
+    fn report(&self) -> SearchReport {
+        let plan = self.plan.as_ref().map(|plan| plan.report(&self.model, &self.search));
+        SearchReport { plan, ..map::search_report(&self.model, &self.search) }
+    }
 }
 
 /// A rival that is loaded.
@@ -87,6 +99,7 @@ impl Lane {
             Stage::Root(solver) => self.solve(solver, ticks, outbox, Stage::Root),
             Stage::Running(solver) => self.solve(solver, ticks, outbox, Stage::Running),
             Stage::Explaining(solver, conflict) => self.explain(solver, conflict, ticks, outbox),
+            Stage::Auditing(solver, audit) => self.audit(solver, audit, ticks, outbox),
             resting => resting,
         };
     }
@@ -100,6 +113,8 @@ impl Lane {
             Request::Inspect(node) => self.inspect(NodeId(node.0), outbox),
             Request::Act(act) => self.steer(act, outbox),
             Request::Relaxation => self.hand_over_root(outbox),
+            Request::Evidence => self.hand_over_evidence(outbox),
+            Request::Audit => self.begin_audit(outbox),
             _ => {}
         }
     }
@@ -134,7 +149,15 @@ impl Lane {
             }
         }
         let drawings = Drawings::new(&model, &stops);
-        Stage::Root(Box::new(Solver { model, drawings, search, told: 0 }))
+        let plan = self.job.settings.plan.as_ref().map(|text| Plan::read(&model, text));
+        if let Some(suggestion) = plan.as_ref().and_then(Plan::suggestion) {
+            search.suggest(suggestion);
+        }
+        let wanted = self.job.settings.heuristics.iter().flatten();
+        if wanted.into_iter().any(|word| word == "family") {
+            suggestions(&model).into_iter().for_each(|one| search.suggest(one));
+        }
+        Stage::Root(Box::new(Solver { model, drawings, search, plan, told: 0 }))
     }
 
     fn solve(
@@ -153,7 +176,7 @@ impl Lane {
                 self.rest(solver)
             }
             tree::Progress::Paused => {
-                let report = map::search_report(&solver.model, &solver.search);
+                let report = solver.report();
                 outbox.push(self.job.run, Reply::Paused(Box::new(report)));
                 Stage::Waiting(solver)
             }
@@ -173,7 +196,7 @@ impl Lane {
     }
 
     fn end(&mut self, solver: Box<Solver>, outbox: &mut Outbox) -> Stage {
-        let report = map::search_report(&solver.model, &solver.search);
+        let report = solver.report();
         let unexplained = report.status == Status::Infeasible
             && solver.search.root().is_some_and(|root| root.status == tree::Status::Optimal);
         outbox.push(self.job.run, Reply::Done(Box::new(report)));
@@ -205,6 +228,51 @@ impl Lane {
     fn explained(&self, solver: Box<Solver>, conflict: &Conflict, outbox: &mut Outbox) -> Stage {
         let report = map::conflict_report(&solver.model, &conflict.result());
         outbox.push(self.job.run, Reply::Conflict(report));
+        Stage::Over(Some(solver))
+    }
+
+    /// Begins to prove a search that has ended again, by its branchings alone.
+    fn begin_audit(&mut self, outbox: &mut Outbox) {
+        let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
+        self.stage = match stage {
+            Stage::Over(Some(solver)) => {
+                match Audit::new(Rc::clone(&solver.model), solver.search.testimony()) {
+                    Ok(audit) => Stage::Auditing(solver, Box::new(audit)),
+                    Err(why) => {
+                        outbox.push(self.job.run, Reply::Failed(fault("rival", why)));
+                        Stage::Over(Some(solver))
+                    }
+                }
+            }
+            earlier => {
+                let why = fault("rival", "the search has not ended");
+                outbox.push(self.job.run, Reply::Failed(why));
+                earlier
+            }
+        };
+    }
+
+    fn audit(
+        &self,
+        solver: Box<Solver>,
+        mut audit: Box<Audit>,
+        ticks: u64,
+        outbox: &mut Outbox,
+    ) -> Stage {
+        if audit.advance(ticks) {
+            return self.audited(solver, &audit, outbox);
+        }
+        let (done, all) = audit.progress();
+        let doing = format!("proving again: {done} of {all} nodes");
+        let progress = Progress { doing, ticks: audit.ticks(), iterations: 0 };
+        outbox.push(self.job.run, Reply::Progress(progress));
+        Stage::Auditing(solver, audit)
+    }
+
+    /// Says what was proved, as far as it came.
+    fn audited(&self, solver: Box<Solver>, audit: &Audit, outbox: &mut Outbox) -> Stage {
+        let report = map::audit_report(audit);
+        outbox.push(self.job.run, Reply::Audited(Box::new(report)));
         Stage::Over(Some(solver))
     }
 
@@ -265,6 +333,10 @@ impl Lane {
                 self.hand_over(act, &mut solver, outbox);
                 Stage::Explaining(solver, conflict)
             }
+            Stage::Auditing(mut solver, audit) => {
+                self.hand_over(act, &mut solver, outbox);
+                Stage::Auditing(solver, audit)
+            }
             Stage::Over(Some(mut solver)) => {
                 self.hand_over(act, &mut solver, outbox);
                 Stage::Over(Some(solver))
@@ -301,7 +373,7 @@ impl Lane {
                 solver.search.run(nodes);
                 Stage::Running(solver)
             }
-            over @ (Stage::Explaining(..) | Stage::Over(_)) => over,
+            over @ (Stage::Explaining(..) | Stage::Auditing(..) | Stage::Over(_)) => over,
             earlier => {
                 self.asked = Some(nodes);
                 earlier
@@ -314,7 +386,7 @@ impl Lane {
         match &mut self.stage {
             Stage::Root(solver) | Stage::Running(solver) => solver.search.pause(),
             Stage::Waiting(solver) => {
-                let report = map::search_report(&solver.model, &solver.search);
+                let report = solver.report();
                 outbox.push(self.job.run, Reply::Paused(Box::new(report)));
             }
             _ => {}
@@ -335,6 +407,7 @@ impl Lane {
                 Stage::Over(None)
             }
             Stage::Explaining(solver, conflict) => self.explained(solver, &conflict, outbox),
+            Stage::Auditing(solver, audit) => self.audited(solver, &audit, outbox),
             over @ Stage::Over(_) => over,
         };
     }
@@ -350,11 +423,18 @@ impl Lane {
         outbox.push(self.job.run, Reply::Relaxation(relaxation));
     }
 
+    fn hand_over_evidence(&self, outbox: &mut Outbox) {
+        let (Stage::Waiting(solver) | Stage::Over(Some(solver))) = &self.stage else { return };
+        let evidence = map::evidence(&solver.search);
+        outbox.push(self.job.run, Reply::Evidence(Box::new(evidence)));
+    }
+
     fn inspect(&mut self, node: NodeId, outbox: &mut Outbox) {
         let (Stage::Root(solver)
         | Stage::Waiting(solver)
         | Stage::Running(solver)
         | Stage::Explaining(solver, _)
+        | Stage::Auditing(solver, _)
         | Stage::Over(Some(solver))) = &mut self.stage
         else {
             outbox.push(self.job.run, Reply::Failed(fault("rival", "there is no node yet")));

@@ -6,6 +6,7 @@
 //! | [`native::run_rival`] | the same worker driven to its end without a page |
 //! | [`StudyRun`] | a study of all rivals of a scenario, in slices |
 //! | [`log_digest`] | one line that two machines can compare |
+//! | [`LogAudit`] | a saved log proved again |
 //! | [`explanation`], [`explained`] | what the code of a complaint means, and the codes there are |
 //! | [`prepare`] | the model of a rival, for checks |
 //! | [`describe`] | the same in sentences |
@@ -15,10 +16,12 @@
 //! out is the same for every slice size; replies that would only repeat how far the work is are
 //! merged until they are taken.
 
+mod audit;
 mod bindings;
 mod check;
 mod digest;
 mod explain;
+mod family;
 mod fault;
 mod handover;
 mod lane;
@@ -27,11 +30,13 @@ mod map;
 mod mps;
 pub mod native;
 mod outbox;
+mod plan;
 mod readings;
 mod studies;
 mod warm;
 mod worker;
 
+pub use audit::LogAudit;
 pub use digest::log_digest;
 pub use explain::{explained, explanation};
 pub use handover::{HandOver, Refusal, latex, mps, notation_text};

@@ -2,6 +2,7 @@
 //! without a clock: who calls may look at one between slices.
 
 use record::event::Event;
+use record::ground::Evidence;
 use record::message::{Acted, LaneJob, Reply, Request, RivalReport};
 use record::results::{
     ConflictReport, ErrorReport, FamilyReport, RivalResult, RootReport, SearchReport, Status,
@@ -65,6 +66,8 @@ pub struct RivalRun {
     pub relaxation: Option<Result<Vec<u8>, String>>,
     /// Everything that happened.
     pub events: Vec<Event>,
+    /// What the search found on the way.
+    pub evidence: Option<Evidence>,
     /// Acts by hand that the scenario holds and that did not apply, one sentence each.
     pub refused: Vec<String>,
     /// Whether the one who watched stopped it.
@@ -98,6 +101,7 @@ pub fn run_rival(
     drive.finish(slice, watch);
     if drive.run.root.is_some() {
         drive.worker.handle(Request::Relaxation);
+        drive.worker.handle(Request::Evidence);
         drive.finish(slice, watch);
     }
     drive.run
@@ -252,6 +256,7 @@ impl Drive {
                 Reply::Conflict(conflict) => self.run.conflict = Some(conflict),
                 Reply::Failed(error) => self.run.error = Some(error),
                 Reply::Relaxation(relaxation) => self.run.relaxation = Some(relaxation),
+                Reply::Evidence(evidence) => self.run.evidence = Some(*evidence),
                 Reply::Acted(acted) => self.run.refused.extend(refusal(&acted)),
                 Reply::Ready { .. }
                 | Reply::InstanceRead(_)
@@ -262,6 +267,7 @@ impl Drive {
                 | Reply::Explained(_)
                 | Reply::Written(_)
                 | Reply::Studied(_)
+                | Reply::Audited(_)
                 | Reply::Bound(_) => {}
             }
         }

@@ -115,6 +115,8 @@ impl Worker {
             | Request::Stop
             | Request::Inspect(_)
             | Request::Relaxation
+            | Request::Evidence
+            | Request::Audit
             | Request::Act(_) => match &mut self.lane {
                 Some(lane) => lane.act(&request, &mut self.outbox),
                 None => self.reply(Reply::Failed(fault("message", "no rival is loaded"))),

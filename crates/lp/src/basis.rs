@@ -54,6 +54,16 @@ impl Basis {
         Self { columns: columns as u32, rows: (status.len() - columns) as u32, packed }
     }
 
+    /// The packed statuses.
+    pub(crate) fn packed(&self) -> &[u8] {
+        &self.packed
+    }
+
+    /// A basis of packed statuses.
+    pub(crate) fn of_packed(packed: Vec<u8>, columns: u32, rows: u32) -> Self {
+        Self { columns, rows, packed }
+    }
+
     /// The status of a variable, columns before rows.
     pub(crate) fn status(&self, variable: usize) -> Status {
         Status::of_code(self.packed.get(variable / 4).copied().unwrap_or(0) >> (2 * (variable % 4)))

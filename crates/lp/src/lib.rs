@@ -28,6 +28,7 @@
 //! ```
 
 mod basis;
+mod basis_change;
 mod care;
 mod change;
 mod check;
@@ -52,6 +53,7 @@ mod tolerances;
 mod verify;
 
 pub use basis::{Basis, Repair};
+pub use basis_change::BasisChange;
 pub use checkpoint::Checkpoint;
 pub use outcome::{Outcome, Ray, Solution, StopReason};
 pub use presolve::{

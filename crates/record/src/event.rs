@@ -3,6 +3,8 @@
 
 use serde::{Deserialize, Serialize};
 
+use crate::ground::Ground;
+
 /// The number of a node, counted from 1 (the root) in the order of creation.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize)]
 pub struct NodeNumber(pub u32);
@@ -118,10 +120,12 @@ pub enum Event {
 /// A saved log of one search. [`crate::log`] reads and writes it.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Log {
-    /// The version of this format: 1.
+    /// The version of its bytes: 2 where it says what it rests on, else 1.
     pub version: u32,
     /// The version of the engine that wrote it.
     pub engine: String,
     /// The events in order.
     pub events: Vec<Event>,
+    /// What it rests on.
+    pub ground: Option<Ground>,
 }

@@ -7,7 +7,8 @@
 //! | [`mod@file`] | the scenario file: TOML text to scenario and back, each complaint with its place |
 //! | [`link`] | the link: a scenario text in the fragment of an address |
 //! | [`event`] | what a search reports as it goes |
-//! | [`log`] | the saved log (version 1) and its digest |
+//! | [`log`] | the saved log (versions 1 and 2) and its digest |
+//! | [`ground`] | what a log rests on, so that it can be proved again |
 //! | [`message`] | [`message::Request`] and [`message::Reply`] |
 //! | [`opinion`] | the relaxation that a second LP code is asked about, and its answer |
 //! | [`typeset`] | a formulation set as mathematics |
@@ -23,6 +24,7 @@
 
 pub mod event;
 pub mod file;
+pub mod ground;
 pub mod handover;
 pub mod hash;
 pub mod link;

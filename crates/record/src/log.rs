@@ -1,21 +1,23 @@
-//! The saved log, version 1.
+//! The saved log.
 //!
 //! ```text
 //! bytes 0..8    the letters "hullward"
 //! byte  8       the letter "L"
-//! byte  9       the version: 1
+//! byte  9       the version: 1 or 2
 //! then          the engine's version and the list of events, in postcard's encoding
+//! in version 2  what the log rests on ([`crate::ground`])
 //! ```
 //!
 //! Old logs open for ever: the events of version 1 keep their numbers and fields; whoever adds
-//! to [`Event`] in a way that changes these bytes writes version 2 and still reads version 1.
+//! to [`Event`] or [`crate::ground`] in a way that changes these bytes writes version 3 and still
+//! reads the others. A log without a ground is written as version 1.
 
 use std::fmt;
 
 use crate::event::{Event, Log};
 use crate::hash;
 
-const HEAD: &[u8; 10] = b"hullwardL\x01";
+const HEAD: &[u8; 9] = b"hullwardL";
 
 /// The longest log, in bytes: 256 MiB.
 pub const LONGEST_LOG: usize = 256 << 20;
@@ -38,7 +40,7 @@ impl fmt::Display for LogError {
         match self {
             Self::NoLog => formatter.write_str("this is no log of a search"),
             Self::Version(version) => {
-                write!(formatter, "the log is of version {version}; this engine reads version 1")
+                write!(formatter, "the log is of version {version}; this engine reads 1 and 2")
             }
             Self::Malformed => formatter.write_str("the log is damaged or cut short"),
             Self::TooLong => formatter.write_str("the log is longer than 256 MiB"),
@@ -51,17 +53,21 @@ impl std::error::Error for LogError {}
 /// A log as bytes: the same log gives the same bytes.
 ///
 /// # Errors
-/// [`LogError::TooLong`]; [`LogError::Version`] for a version other than 1.
+/// [`LogError::TooLong`]; [`LogError::Version`] for a version that does not go with its ground.
 pub fn encode(log: &Log) -> Result<Vec<u8>, LogError> {
-    if log.version != 1 {
+    let version = if log.ground.is_some() { 2 } else { 1 };
+    if log.version != u32::from(version) {
         return Err(LogError::Version(u8::try_from(log.version).unwrap_or(u8::MAX)));
     }
-    let body =
-        postcard::to_allocvec(&(&log.engine, &log.events)).map_err(|_| LogError::Malformed)?;
+    let body = match &log.ground {
+        None => postcard::to_allocvec(&(&log.engine, &log.events)),
+        Some(ground) => postcard::to_allocvec(&(&log.engine, &log.events, ground)),
+    };
+    let body = body.map_err(|_| LogError::Malformed)?;
     if body.len() > LONGEST_LOG {
         return Err(LogError::TooLong);
     }
-    Ok([HEAD.as_slice(), &body].concat())
+    Ok([HEAD.as_slice(), &[version], &body].concat())
 }
 
 /// A log from bytes.
@@ -72,15 +78,19 @@ pub fn decode(bytes: &[u8]) -> Result<Log, LogError> {
     if bytes.len() > LONGEST_LOG {
         return Err(LogError::TooLong);
     }
-    let name = HEAD.len() - 1;
-    if bytes.len() < HEAD.len() || bytes[..name] != HEAD[..name] {
-        return Err(LogError::NoLog);
-    }
-    if bytes[name] != HEAD[name] {
-        return Err(LogError::Version(bytes[name]));
-    }
-    match postcard::take_from_bytes(&bytes[HEAD.len()..]) {
-        Ok(((engine, events), [])) => Ok(Log { version: 1, engine, events }),
+    let rest = bytes.strip_prefix(HEAD).ok_or(LogError::NoLog)?;
+    let (&version, body) = rest.split_first().ok_or(LogError::NoLog)?;
+    let read = match version {
+        1 => postcard::take_from_bytes(body).map(|((engine, events), left)| {
+            (Log { version: 1, engine, events, ground: None }, left)
+        }),
+        2 => postcard::take_from_bytes(body).map(|((engine, events, ground), left)| {
+            (Log { version: 2, engine, events, ground: Some(ground) }, left)
+        }),
+        newer => return Err(LogError::Version(newer)),
+    };
+    match read {
+        Ok((log, [])) => Ok(log),
         _ => Err(LogError::Malformed),
     }
 }
@@ -96,6 +106,7 @@ pub fn digest(events: &[Event]) -> String {
 mod tests {
     use super::*;
     use crate::event::{Branching, NodeNumber, NodeState, Origin, Side};
+    use crate::ground::Ground;
 
     fn sample() -> Log {
         let root = NodeNumber(1);
@@ -120,7 +131,7 @@ mod tests {
             Event::Dropped { node: NodeNumber(2), state: NodeState::Pruned },
             Event::Bound { bound: 214.0, nodes: 1 },
         ];
-        Log { version: 1, engine: "0.1.0".to_owned(), events }
+        Log { version: 1, engine: "0.1.0".to_owned(), events, ground: None }
     }
 
     #[test]
@@ -142,8 +153,18 @@ mod tests {
         assert_eq!(decode(&bytes[..bytes.len() - 1]), Err(LogError::Malformed));
         assert_eq!(decode(&[bytes.as_slice(), &[0]].concat()), Err(LogError::Malformed));
         let mut newer = bytes;
-        newer[9] = 2;
-        assert_eq!(decode(&newer), Err(LogError::Version(2)));
+        newer[9] = 3;
+        assert_eq!(decode(&newer), Err(LogError::Version(3)));
         assert_eq!(encode(&Log { version: 2, ..sample() }), Err(LogError::Version(2)));
+    }
+
+    #[test]
+    fn a_log_that_says_what_it_rests_on_comes_back() {
+        let ground = Ground { scenario: "hullward = 1\n".to_owned(), ..Ground::default() };
+        let log = Log { version: 2, ground: Some(ground), ..sample() };
+        let bytes = encode(&log).expect("version 2");
+        assert_eq!(bytes[9], 2);
+        assert_eq!(decode(&bytes), Ok(log.clone()));
+        assert_eq!(encode(&Log { version: 1, ..log }), Err(LogError::Version(1)));
     }
 }

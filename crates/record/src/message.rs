@@ -4,8 +4,11 @@
 use serde::{Deserialize, Serialize};
 
 use crate::event::{Branching, Event, NodeNumber, NodeState};
+use crate::ground::Evidence;
 use crate::handover::{Form, Written};
-use crate::results::{ConflictReport, ErrorReport, FamilyReport, Proof, RootReport, SearchReport};
+use crate::results::{
+    AuditReport, ConflictReport, ErrorReport, FamilyReport, Proof, RootReport, SearchReport,
+};
 use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
 use crate::study::Report;
 use crate::typeset::Typeset;
@@ -59,6 +62,11 @@ pub enum Request {
     /// solved before it is not looked at. Answered by [`Reply::Acted`], and by
     /// [`Reply::Paused`] or [`Reply::Done`] where the search stood still.
     Act(Act),
+    /// Hand over what the search found on the way. Answered by [`Reply::Evidence`].
+    Evidence,
+    /// Prove a search that has ended again, from its branchings. Answered by [`Reply::Progress`]
+    /// and [`Reply::Audited`].
+    Audit,
 }
 
 /// A rival to load.
@@ -208,6 +216,10 @@ pub enum Reply {
     Relaxation(Result<Vec<u8>, String>),
     /// What became of an act by hand.
     Acted(Box<Acted>),
+    /// What the search found on the way.
+    Evidence(Box<Evidence>),
+    /// What came of proving the search again.
+    Audited(Box<AuditReport>),
     /// The request could not be carried out.
     Failed(ErrorReport),
 }

@@ -1,10 +1,17 @@
 //! The JSON objects of `hullward run --json`. Field names are fixed; new ones may be added.
 //! What is also sent between workers leaves no field out, for postcard names none.
 
+mod audit;
 mod digest;
+mod measures;
 mod solution;
 
+pub use audit::{AuditReport, Judgement};
 pub use digest::{Comparison, compare, digest};
+pub use measures::{
+    DiagnosisKind, DiagnosisReport, EstimateReport, IncumbentReport, LeavesReport, MeasuresReport,
+    PlanReport,
+};
 
 use std::collections::BTreeMap;
 
@@ -207,6 +214,18 @@ pub struct SearchReport {
     /// What general cuts gave, where some were asked for.
     #[serde(default)]
     pub cuts: Option<CutsReport>,
+    /// How the tree grew.
+    #[serde(default)]
+    pub measures: Box<MeasuresReport>,
+    /// How many nodes there will be in all, while that is not known.
+    #[serde(default)]
+    pub estimate: Option<EstimateReport>,
+    /// What the search suffers from, what weighs most first.
+    #[serde(default)]
+    pub diagnosis: Vec<DiagnosisReport>,
+    /// What became of the plan that was given.
+    #[serde(default)]
+    pub plan: Option<PlanReport>,
 }
 
 /// What general cuts gave.

@@ -202,6 +202,10 @@ pub struct Run {
     pub cut_rounds: u32,
     /// What the settings start from; those beside it are what it does not set, or were changed.
     pub preset: Preset,
+    /// How good plans are looked for; `None` is the default: `rounding` and `round trip`.
+    pub heuristics: Option<Vec<String>>,
+    /// A plan to begin with, in the instance's names.
+    pub plan: Option<String>,
 }
 
 /// The classes of general cuts, as a scenario names them.
@@ -264,6 +268,7 @@ impl Run {
             seconds: self.seconds,
             best_known: self.best_known,
             priority: self.priority.clone(),
+            plan: self.plan.clone(),
             ..Self::of(preset)
         }
     }
@@ -300,6 +305,8 @@ impl Default for Run {
             cut_every: 0,
             cut_rounds: 0,
             preset: Preset::Bare,
+            heuristics: None,
+            plan: None,
         }
     }
 }

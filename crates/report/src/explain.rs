@@ -38,6 +38,27 @@ pub fn search(search: &SearchReport) -> Option<String> {
     })
 }
 
+/// How large the tree will be, while that is not known, what became of a plan that was given, and
+/// what the search suffers from: a sentence each.
+#[must_use]
+pub fn grown(search: &SearchReport) -> Vec<String> {
+    let mut all = Vec::new();
+    if let Some(plan) = &search.plan {
+        let value = plan.value.map_or_else(String::new, |value| format!(": {}", short(value)));
+        let word = if plan.feasible { "is one" } else { "is none" };
+        all.push(format!("The plan that was given {word}{value}"));
+        all.extend(plan.remarks.iter().cloned());
+    }
+    if let Some(estimate) = &search.estimate {
+        let [low, middle, high] = [estimate.low, estimate.middle, estimate.high].map(short);
+        all.push(format!(
+            "The whole tree may have about {middle} nodes; three estimates lie between {low} and {high}"
+        ));
+    }
+    all.extend(search.diagnosis.iter().map(|found| found.words.clone()));
+    all
+}
+
 /// Families that cannot hold together, and what is known of the set.
 #[must_use]
 pub fn conflict(found: &ConflictReport) -> String {
@@ -128,7 +149,6 @@ fn clipped(name: &str) -> String {
 
 #[cfg(test)]
 mod tests {
-    use record::results::NodeWorkReport;
 
     use super::*;
 
@@ -180,8 +200,7 @@ mod tests {
             solution: Vec::new(),
             checked: false,
             stopped: None,
-            node_work: NodeWorkReport::default(),
-            cuts: None,
+            ..SearchReport::default()
         };
         let text = search(&vain).unwrap();
         assert!(

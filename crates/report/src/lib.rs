@@ -3,6 +3,7 @@
 //! | module | holds |
 //! |---|---|
 //! | [`number`] | numbers as a reader wants them |
+//! | [`audit`] | what came of proving a search again, in sentences |
 //! | [`axis`] | round ticks and the shared scale |
 //! | [`explain`] | why a rival has no plan or no bound, in sentences |
 //! | [`layout`] | places of tree nodes, stable while the tree grows |
@@ -17,6 +18,7 @@
 //!
 //! Everything is pure and the same on every machine.
 
+pub mod audit;
 pub mod axis;
 pub mod csv;
 pub mod decision;

@@ -11,7 +11,7 @@ use model::{Model, nearest_f64};
 use separate::general::{Class, Frame, GeneralCut, choose, follows};
 
 use crate::cut_round::CutRound;
-use crate::event::{NodeId, NodeState};
+use crate::event::{Event, NodeId, NodeState};
 use crate::pool::Pool;
 use crate::relaxation::{Relaxation, RowOrigin};
 use crate::search::{Hand, Job, PointInHand, Progress, Purpose, Search};
@@ -176,7 +176,7 @@ impl Search {
             return None;
         };
         relaxation.enter(&[]);
-        relaxation.load(self.tree.node(NodeId::ROOT).basis.as_deref());
+        relaxation.load(self.tree.basis(NodeId::ROOT).as_ref());
         let mut hand = Hand::new(NodeId::ROOT, relaxation.simplex.stats().iterations);
         hand.cutting = true;
         self.hand = Some(hand);
@@ -294,7 +294,10 @@ impl Search {
             self.plan = choice.or(self.plan);
         }
         self.note_cuts(Some(self.user(point.bound)));
-        if let Verdict::Solution(solution) = self.checker.check(self.rounds.separators(), &point.x)
+        // One that breaks a row by rounding would claim more than there is: its nodes find it exactly.
+        let verdict = self.checker.check(self.rounds.separators(), &point.x);
+        if let Verdict::Solution(solution) = verdict
+            && solution.exact
         {
             self.accept(solution, Purpose::Relaxation);
         }
@@ -319,6 +322,7 @@ impl Search {
         self.plan = None;
         self.note_cuts(None);
         self.tree.node_mut(NodeId::ROOT).state = NodeState::Infeasible;
+        self.events.push(Event::Dropped { node: NodeId::ROOT, state: NodeState::Infeasible });
         self.count(checked);
         None
     }

@@ -101,6 +101,8 @@ impl Search {
         self.ledger.ticks += point.x.len() as u64;
         let parent = self.tree.node(hand.node).parent();
         let above = parent.map(|parent| self.tree.node(parent).bound);
+        let (rows, basis) = (relaxation.row_count(), relaxation.simplex.basis());
+        self.tree.keep_basis(hand.node, basis);
         let node = self.tree.node_mut(hand.node);
         if let (Some(above), Some(branch)) = (above, node.branch()) {
             self.chooser.learn(&branch, node.distance, point.bound - above);
@@ -109,8 +111,7 @@ impl Search {
         node.bound = point.bound;
         node.proved = larger(node.proved, proved);
         node.state = state;
-        node.rows = u32::try_from(relaxation.row_count()).unwrap_or(u32::MAX);
-        node.basis = Some(Box::new(relaxation.simplex.basis()));
+        node.rows = u32::try_from(rows).unwrap_or(u32::MAX);
         inherited
     }
 
@@ -181,10 +182,10 @@ impl Search {
         }
         let hand = self.hand.take()?;
         let relaxation = self.relaxation.as_ref()?;
+        self.tree.keep_basis(hand.node, relaxation.simplex.basis());
         let node = self.tree.node_mut(hand.node);
         node.state = NodeState::Infeasible;
         node.rows = u32::try_from(relaxation.row_count()).unwrap_or(u32::MAX);
-        node.basis = Some(Box::new(relaxation.simplex.basis()));
         self.ledger.ticks += ray.len() as u64;
         if checked || hand.node == NodeId::ROOT {
             self.count(checked);
@@ -266,6 +267,8 @@ impl Search {
         let Some(bound) = self.global_bound().filter(|bound| bound.is_finite()) else { return };
         if self.ledger.announced.is_none_or(|last| bound > last) {
             self.ledger.announced = Some(bound);
+            let (work, nodes) = (self.work().ticks, self.ledger.nodes);
+            self.ledger.course.rise(work, nodes, bound);
             self.events.push(Event::Bound { bound: self.user(bound), nodes: self.ledger.nodes });
         }
     }

@@ -62,6 +62,8 @@ pub enum Origin {
     Rounding,
     /// A heuristic, by its published name.
     Heuristic(String),
+    /// A plan that a person gave.
+    Given,
 }
 
 /// One event. Bounds and values are in the direction of the objective, offset included.

@@ -102,7 +102,7 @@ impl Search {
             violated: Vec::new(),
             ray: Vec::new(),
             cycle: None,
-            ahead: node.state == NodeState::Open && node.basis.is_none(),
+            ahead: node.state == NodeState::Open && !node.is_solved(),
             branchable: self.branchable(id),
             branching: self.branching_refused(id),
             closing: self.closing_refused(id),
@@ -117,12 +117,12 @@ impl Search {
             view.cycle = self.cycle_without_bound();
         }
         let Some(relaxation) = &self.relaxation else { return };
-        let above = node.parent().filter(|_| view.ahead).map(|parent| self.tree.node(parent));
-        let Some(basis) = above.unwrap_or(node).basis.as_deref() else { return };
+        let above = node.parent().filter(|_| view.ahead);
+        let Some(basis) = self.tree.basis(above.unwrap_or(view.node)) else { return };
         let rows = if view.ahead { relaxation.row_count() } else { node.rows as usize };
         let path = self.tree.path(view.node);
         let Ok(mut simplex) = relaxation.rebuilt(rows, &path) else { return };
-        simplex.load_basis(basis);
+        simplex.load_basis(&basis);
         let iterations = view.ahead.then_some(LOOK);
         simplex.solve(Limits { iterations, ..Limits::default() });
         let Some(outcome) = simplex.outcome() else { return };

@@ -36,9 +36,12 @@
 //! | [`Settings`] | rules and limits |
 //! | [`Search`] | running: `advance`, `run`, `pause`, `stop`; steering: `act`, `replay` |
 //! | [`Act`], [`Acted`], [`Refusal`] | branching, closing, cutting and stopping by hand |
+//! | [`Heuristics`], [`Suggestion`] | how plans are looked for; values from which one may be made |
 //! | [`RootResult`], [`Summary`] | what came out |
+//! | [`Measures`], [`Estimate`], [`Diagnosis`] | how the tree grew, how large it will be, what it suffers from |
 //! | [`Event`] | what happened, in order |
 //! | [`Search::inspect`] | one node in full |
+//! | [`Audit`] | a finished search proved again from what its log says |
 //! | [`Conflict`] | which families of an infeasible model cannot hold together |
 //!
 //! **Bounds are true.** Every node's LP is solved to its end, also where its bound passes the
@@ -62,17 +65,23 @@
 
 mod acts;
 mod allowed;
+mod audit;
 mod branching;
 mod conflict;
+mod course;
 mod cut_round;
 mod cutting;
 mod cycle;
 mod decide;
+mod diagnosis;
 mod direction;
+mod dive;
 mod event;
 mod fix;
+mod heuristics;
 mod hold;
 mod inspect;
+mod measures;
 mod node;
 mod open;
 mod pool;
@@ -89,17 +98,23 @@ mod search;
 mod settings;
 mod solution;
 mod summary;
+mod symmetry;
 mod target;
 mod tightened;
 mod tour;
 mod work;
 
 pub use acts::{Act, Acted, Refusal};
+pub use audit::{Audit, AuditResult, Claim, Fault, Judgement, LoggedRow, Testimony};
 pub use conflict::{Certainty, Conflict, ConflictLimits, ConflictResult};
+pub use course::Found;
 pub use cutting::{ByClass, CutsResult};
 pub use cycle::Cycle;
+pub use diagnosis::Diagnosis;
 pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
+pub use heuristics::{GivenPlan, Heuristics, SuggestedBy, Suggestion};
 pub use inspect::{NodeView, ViolatedSubset};
+pub use measures::{Estimate, Gains, Leaves, Measures};
 pub use proving::standings;
 pub use root::{RootResult, Status};
 pub use search::{Progress, Search, Work};

@@ -1,19 +1,31 @@
 //! The tree of nodes: one small record a node, in the order of creation.
 //!
-//! A record is 64 bytes beside its final basis, which is packed in 2 bits a variable. Bounds in
-//! the tree are internal: for a minimisation, offset included.
+//! A record is 64 bytes beside its final basis, which is kept as a difference to its parent's; at
+//! every 16th depth it is kept whole, so that a basis is put together of few differences. Bounds
+//! in the tree are internal: for a minimisation, offset included.
 
-use lp::Basis;
+use lp::{Basis, BasisChange};
 use model::ColumnId;
 
 use crate::event::{Branch, NodeId, NodeState, Side};
 use crate::tightened::Tightened;
 
+/// At depths that are a multiple of it a basis is kept whole.
+const WHOLE: u32 = 16;
+
+/// How a final basis is kept.
+#[derive(Debug)]
+enum Kept {
+    Whole(Basis),
+    /// The difference to the parent's.
+    Change(BasisChange),
+}
+
 /// One node.
 #[derive(Debug)]
 pub(crate) struct Node {
     /// The final basis of its relaxation, once solved.
-    pub(crate) basis: Option<Box<Basis>>,
+    basis: Option<Box<Kept>>,
     /// Its own bound once it has one; before that the best its ancestors gave.
     pub(crate) bound: f64,
     /// A bound proved in exact arithmetic for it or an ancestor, rounded to the safe side.
@@ -44,6 +56,11 @@ impl Node {
             side: self.side,
             bound: self.branch_bound,
         })
+    }
+
+    /// Whether its relaxation was solved, or found to have no point.
+    pub(crate) fn is_solved(&self) -> bool {
+        self.basis.is_some()
     }
 
     /// Its parent; `None` for the root.
@@ -106,6 +123,48 @@ impl Tree {
         NodeId(u32::try_from(self.nodes.len()).unwrap_or(u32::MAX))
     }
 
+    /// Keeps the final basis of a node. `O(variables)`.
+    pub(crate) fn keep_basis(&mut self, id: NodeId, basis: Basis) {
+        let record = self.node(id);
+        let near = record.parent().filter(|_| !record.depth.is_multiple_of(WHOLE));
+        let from = near.and_then(|parent| self.basis(parent));
+        let kept = from.map(|from| Kept::Change(basis.change_from(&from)));
+        self.node_mut(id).basis = Some(Box::new(kept.unwrap_or(Kept::Whole(basis))));
+    }
+
+    /// The final basis of a node, once it is solved. `O(variables)`.
+    pub(crate) fn basis(&self, id: NodeId) -> Option<Basis> {
+        let mut changes = Vec::new();
+        let mut at = id;
+        let mut basis = loop {
+            let record = self.node(at);
+            match record.basis.as_deref()? {
+                Kept::Whole(basis) => break basis.clone(),
+                Kept::Change(change) => changes.push(change),
+            }
+            at = record.parent()?;
+        };
+        for change in changes.into_iter().rev() {
+            basis = basis.changed(change);
+        }
+        Some(basis)
+    }
+
+    /// Bytes of the bases that are kept, and how many they are.
+    #[cfg(test)]
+    pub(crate) fn basis_bytes(&self) -> (usize, usize) {
+        let kept = self.nodes.iter().filter_map(|node| node.basis.as_deref());
+        kept.fold((0, 0), |(bytes, count), kept| {
+            let own = match kept {
+                Kept::Whole(basis) => {
+                    (basis.column_count() as usize + basis.row_count() as usize).div_ceil(4)
+                }
+                Kept::Change(change) => change.len(),
+            };
+            (bytes + size_of::<Kept>() + own, count + 1)
+        })
+    }
+
     /// The record of a node that exists.
     pub(crate) fn node(&self, id: NodeId) -> &Node {
         &self.nodes[id.0 as usize - 1]
@@ -119,6 +178,11 @@ impl Tree {
     /// Whether there is such a node.
     pub(crate) fn has(&self, id: NodeId) -> bool {
         id.0 >= 1 && id.0 as usize <= self.nodes.len()
+    }
+
+    /// The numbers of all nodes in order.
+    pub(crate) fn ids(&self) -> impl Iterator<Item = NodeId> + use<> {
+        (1..=u32::try_from(self.nodes.len()).unwrap_or(u32::MAX)).map(NodeId)
     }
 
     /// Whether a node is `top` or comes from it. `O(depth)`.

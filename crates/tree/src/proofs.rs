@@ -69,7 +69,7 @@ impl Search {
     fn begin_proof(&mut self, proof: Proof, node: NodeId, wish: Wish) -> bool {
         let Some(relaxation) = &self.relaxation else { return false };
         let (from, budget) = match proof {
-            Proof::Leaf(_, from) => (self.tree.node(from).basis.as_deref().cloned(), LEAF),
+            Proof::Leaf(_, from) => (self.tree.basis(from), LEAF),
             Proof::Root | Proof::NoRoot => (Some(relaxation.simplex.basis()), Budget::default()),
         };
         let Some(basis) = from else { return false };
@@ -136,7 +136,7 @@ impl Search {
     /// The node, or its nearest ancestor, that has a final basis.
     fn solved_above(&self, node: NodeId) -> Option<NodeId> {
         let mut at = Some(node);
-        while let Some(here) = at.filter(|&here| self.tree.node(here).basis.is_none()) {
+        while let Some(here) = at.filter(|&here| !self.tree.node(here).is_solved()) {
             at = self.tree.node(here).parent();
         }
         at

@@ -4,6 +4,7 @@ use std::collections::BTreeSet;
 
 use model::ColumnId;
 
+use crate::course::Found;
 use crate::event::{Event, NodeId};
 use crate::relaxation::{Addition, RowOrigin, direction};
 use crate::search::{Ending, Incumbent, Job, Progress, Purpose, Search};
@@ -75,7 +76,7 @@ impl Search {
     /// anything.
     pub(crate) fn round(&mut self, x: &[f64]) -> Option<Progress> {
         let rounded = self.checker.rounded(x);
-        if !self.roundings.is_new(&rounded) {
+        if !self.settings.heuristics.rounding || !self.roundings.is_new(&rounded) {
             return self.proceed();
         }
         let best = self.target.best();
@@ -140,6 +141,7 @@ impl Search {
     ) -> Option<Progress> {
         self.job = Job::None;
         let separators = self.rounds.separators();
+        let near = point.as_ref().map(Completed::near);
         let mut verdict = point.map(|x| self.checker.check_completed(separators, x));
         let own = self.hand.as_ref().and_then(|hand| hand.point.as_ref());
         if let (Purpose::Relaxation, Some(own)) = (purpose, own)
@@ -151,8 +153,21 @@ impl Search {
             self.roundings.note(matches!(verdict, Some(Verdict::Solution(_))));
         }
         match verdict {
-            Some(Verdict::Solution(solution)) => self.take(solution, purpose),
-            _ => self.proceed(),
+            Some(Verdict::Solution(solution)) => {
+                if let Purpose::Suggested(by) = purpose {
+                    self.told_of(by, Some(model::nearest_f64(&solution.value)));
+                }
+                self.take(solution, purpose)
+            }
+            _ => match purpose {
+                Purpose::Suggested(by) => {
+                    if !self.rounds_suggestion(by, near.as_deref()) {
+                        self.told_of(by, None);
+                    }
+                    None
+                }
+                _ => self.proceed(),
+            },
         }
     }
 
@@ -190,8 +205,10 @@ impl Search {
         }
         let value = self.user(internal);
         let node = self.hand.as_ref().map_or(NodeId::ROOT, |hand| hand.node);
-        self.incumbent = Some(Incumbent { solution, value });
-        self.events.push(Event::Incumbent { node, value, origin: purpose.origin() });
+        self.incumbent = Some(Incumbent { solution, node, value });
+        let (nodes, work, origin) = (self.ledger.nodes, self.work().ticks, purpose.origin());
+        self.ledger.course.found.push(Found { nodes, work, value, origin: origin.clone() });
+        self.events.push(Event::Incumbent { node, value, origin });
         self.target.improve(exact);
         self.drop_closed();
         internal

@@ -11,9 +11,12 @@ use separate::Separator;
 
 use crate::acts::Acts;
 use crate::branching::{Choice, Chooser};
+use crate::course::Course;
 use crate::cut_round::CutRound;
 use crate::cutting::Cutting;
+use crate::dive::Dive;
 use crate::event::{Event, NodeId, Origin};
+use crate::heuristics::{SuggestedBy, Suggestions};
 use crate::hold::Holding;
 use crate::node::Tree;
 use crate::open::Open;
@@ -86,6 +89,7 @@ pub(crate) enum Job {
     Tour(Box<TourSearch>),
     Probe(Box<Probing>),
     Cut(Box<CutRound>),
+    Dive(Box<Dive>),
     Prove(Box<Proving>, Proof),
 }
 
@@ -95,6 +99,7 @@ pub(crate) enum Purpose {
     Relaxation,
     Rounding,
     Tour,
+    Suggested(SuggestedBy),
 }
 
 impl Purpose {
@@ -103,6 +108,7 @@ impl Purpose {
             Self::Relaxation => Origin::Relaxation,
             Self::Rounding => Origin::Rounding,
             Self::Tour => Origin::Heuristic(crate::tour::NAME.to_owned()),
+            Self::Suggested(by) => by.origin(),
         }
     }
 }
@@ -112,6 +118,8 @@ impl Purpose {
 pub(crate) enum Opening {
     Tour,
     Rounding,
+    Suggestions,
+    Dives,
     Cuts,
     Branch,
     Done,
@@ -177,6 +185,8 @@ impl Hand {
 #[derive(Debug, Clone)]
 pub(crate) struct Incumbent {
     pub(crate) solution: Solution,
+    /// The node at which it was found.
+    pub(crate) node: NodeId,
     /// Its value as the user reads it.
     pub(crate) value: f64,
 }
@@ -199,6 +209,10 @@ pub(crate) struct Ledger {
     pub(crate) pruned: bool,
     /// What node work did.
     pub(crate) node_work: NodeWorkCounts,
+    /// Bound and incumbents over work and nodes.
+    pub(crate) course: Course,
+    /// Simplex iterations of dives.
+    pub(crate) iterations: u64,
     /// Work done outside of LP, separation and candidates.
     pub(crate) ticks: u64,
 }
@@ -231,6 +245,7 @@ pub struct Search {
     pub(crate) acts: Acts,
     pub(crate) holding: Holding,
     pub(crate) roundings: Roundings,
+    pub(crate) suggestions: Suggestions,
     pub(crate) ledger: Ledger,
     pub(crate) doubtful: Doubtful,
     pub(crate) events: Vec<Event>,
@@ -249,7 +264,7 @@ impl Search {
             rounds: Rounds::new(&model),
             checker: Checker::new(&model),
             chooser: Chooser::new(&model, &settings.priority),
-            trip: RoundTrip::find(&model).map(Rc::new),
+            trip: settings.heuristics.trip.then(|| RoundTrip::find(&model).map(Rc::new)).flatten(),
             tree: Tree::new(),
             cutting: (!settings.cuts.is_empty()).then(|| Cutting::new(&model)),
             propagator: settings.node_work.propagation.then(|| Propagator::new(&model)),
@@ -268,6 +283,7 @@ impl Search {
             acts: Acts::default(),
             holding: Holding::default(),
             roundings: Roundings::default(),
+            suggestions: Suggestions::default(),
             ledger: Ledger::default(),
             doubtful: Doubtful::default(),
             events: vec![Event::Created { node: NodeId::ROOT, parent: None, branching: None }],
@@ -368,12 +384,14 @@ impl Search {
         let (ticks, iterations) = stats.map_or((0, 0), |stats| (stats.ticks, stats.iterations));
         let job = match &self.job {
             Job::Tour(tour) => tour.ticks(),
+            Job::Dive(dive) => dive.ticks(),
             Job::Prove(proving, _) => proving.ticks(),
             _ => 0,
         };
+        let dived = if let Job::Dive(dive) = &self.job { dive.iterations() } else { 0 };
         Work {
             ticks: self.ledger.ticks + ticks + self.rounds.ticks() + self.checker.ticks() + job,
-            iterations: iterations + self.checker.iterations(),
+            iterations: iterations + self.checker.iterations() + self.ledger.iterations + dived,
             doing: self.doing(),
         }
     }
@@ -387,6 +405,7 @@ impl Search {
             (Job::Separate, _) => "separating",
             (Job::Complete(_), _) => "completing a solution",
             (Job::Tour(_), _) => "looking for a round trip",
+            (Job::Dive(_), _) => "diving for a plan",
             (Job::Cut(_), _) => "looking for general cuts",
             (Job::Probe(_), _) => "trying branchings",
             (Job::Prove(..), _) => "proving a bound",
@@ -403,8 +422,12 @@ impl Search {
         if ending == Ending::Complete {
             self.settle();
         }
+        if let Job::Dive(dive) = &self.job {
+            self.ledger.iterations += dive.iterations();
+        }
         self.ledger.ticks += match &self.job {
             Job::Tour(tour) => tour.ticks(),
+            Job::Dive(dive) => dive.ticks(),
             Job::Prove(proving, _) => proving.ticks(),
             _ => 0,
         };

@@ -2,6 +2,8 @@
 
 use separate::general::Classes;
 
+use crate::heuristics::Heuristics;
+
 /// Which column a node is branched on.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
 pub enum Branching {
@@ -98,6 +100,8 @@ pub struct Settings {
     pub node_work: NodeWork,
     /// General cuts.
     pub cuts: Cuts,
+    /// How plans are looked for.
+    pub heuristics: Heuristics,
     /// A value of the objective known to be reachable: nodes that cannot be better are
     /// closed, and solutions that are worse are not taken.
     pub cutoff: Option<f64>,
@@ -120,6 +124,7 @@ impl Default for Settings {
             priority: Vec::new(),
             node_work: NodeWork::default(),
             cuts: Cuts::default(),
+            heuristics: Heuristics::default(),
             cutoff: None,
             node_limit: None,
             iteration_limit: None,

@@ -54,6 +54,16 @@ pub(crate) enum Completed {
     Exact(Vec<Number>),
 }
 
+impl Completed {
+    /// The nearest floats.
+    pub(crate) fn near(&self) -> Vec<f64> {
+        match self {
+            Self::Float(x) => x.clone(),
+            Self::Exact(x) => x.iter().map(nearest_f64).collect(),
+        }
+    }
+}
+
 /// Checks points of one model.
 #[derive(Debug)]
 pub(crate) struct Checker {

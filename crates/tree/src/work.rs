@@ -46,6 +46,7 @@ impl Search {
             }
             Job::Probe(_) => self.probe(ticks),
             Job::Cut(_) => self.advance_cuts(),
+            Job::Dive(_) => self.dive(ticks),
             Job::Tour(tour) => {
                 if tour.advance(ticks) {
                     self.toured();
@@ -81,9 +82,21 @@ impl Search {
                 None
             }
             Opening::Rounding => {
-                self.opening = Opening::Cuts;
+                self.opening = Opening::Suggestions;
                 let x = self.root.as_ref().map(|root| root.x.clone())?;
                 self.round(&x)
+            }
+            Opening::Suggestions => {
+                if !self.next_suggestion() {
+                    self.opening = Opening::Dives;
+                }
+                None
+            }
+            Opening::Dives => {
+                if !self.next_dive() {
+                    self.opening = Opening::Cuts;
+                }
+                None
             }
             Opening::Cuts => {
                 self.opening = Opening::Branch;
@@ -142,9 +155,9 @@ impl Search {
         let path = self.tree.path(node);
         let parent = self.tree.node(node).parent();
         relaxation.enter(&path);
-        let own = parent.and_then(|parent| self.tree.node(parent).basis.as_deref());
+        let own = parent.and_then(|parent| self.tree.basis(parent));
         let cut = self.cutting.as_ref().and_then(Cutting::basis);
-        relaxation.load(cut.filter(|_| parent == Some(NodeId::ROOT)).or(own));
+        relaxation.load(cut.filter(|_| parent == Some(NodeId::ROOT)).or(own.as_ref()));
         self.hand = Some(Hand::new(node, relaxation.simplex.stats().iterations));
         self.solve()
     }

@@ -9,6 +9,7 @@ use record::message::{Envelope, LaneJob, Reply, Request, RunNumber};
 use record::opinion::Opinion;
 use record::results::Status;
 use record::scenario::Rival;
+use report::audit::sentences;
 
 use crate::browser::session::refusal;
 use crate::browser::worker::WorkerHandle;
@@ -184,12 +185,14 @@ impl LaneRun {
                 Some(LaneAction::Failed(error))
             }
             Reply::Acted(acted) => refusal(&acted, &self.columns).map(LaneAction::Notice),
+            Reply::Audited(found) => Some(LaneAction::Notice(sentences(&found).join(" "))),
             Reply::Relaxation(Err(why)) => Some(LaneAction::Second(Opinion::Silent(why))),
             Reply::Checked(_)
             | Reply::Explained(_)
             | Reply::Relaxation(Ok(_))
             | Reply::Bound(_)
             | Reply::Node(_)
+            | Reply::Evidence(_)
             | Reply::Written(_)
             | Reply::Studied(_)
             | Reply::Ready { .. }

@@ -239,6 +239,14 @@ impl Session {
         }
     }
 
+    /// Has a search that has ended proved again.
+    pub(crate) fn prove(&self, id: LaneId) {
+        if let Some(lane) = self.0.borrow().lanes.get(&id) {
+            lane.post(&Request::Audit);
+        }
+        self.tell(id, LaneAction::Notice("Proving every leaf again…".to_owned()));
+    }
+
     /// Lets the search stand still.
     pub(crate) fn pause(&self, id: LaneId) {
         self.ask(id, &Request::Pause, Phase::Pausing);

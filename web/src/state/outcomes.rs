@@ -10,7 +10,7 @@ use crate::state::lane::{Lane, Phase};
 use crate::state::pointer::Shared;
 
 /// Results kept at most; the oldest go first.
-const MOST: usize = 200;
+pub(crate) const MOST: usize = 200;
 
 /// What a rival gave on an instance.
 #[derive(Debug, Clone, Default, PartialEq)]

@@ -25,6 +25,8 @@ pub(crate) enum Steer {
     Next(Selection),
     /// Rivals are searched with the settings of a preset.
     Preset(Preset),
+    /// Rivals begin with another plan; none where the text is empty.
+    Plan(String),
 }
 
 impl Steer {
@@ -38,6 +40,7 @@ impl Steer {
             Self::Rule(_) => "branching rule",
             Self::Next(_) => "rule for the next node",
             Self::Preset(_) => "settings",
+            Self::Plan(_) => "plan to begin with",
         }
     }
 }
@@ -64,6 +67,11 @@ impl Document {
             }
             Steer::Next(selection) => {
                 self.run = Shared::new(Run { selection, ..(*self.run).clone() });
+                self.forget_acts();
+            }
+            Steer::Plan(text) => {
+                let plan = Some(text).filter(|text| !text.trim().is_empty());
+                self.run = Shared::new(Run { plan, ..(*self.run).clone() });
                 self.forget_acts();
             }
         }

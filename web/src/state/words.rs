@@ -182,8 +182,7 @@ mod tests {
             solution: Vec::new(),
             checked: true,
             stopped: Some("node limit".to_owned()),
-            node_work: record::results::NodeWorkReport::default(),
-            cuts: None,
+            ..SearchReport::default()
         }
     }
 

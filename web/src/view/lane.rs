@@ -6,6 +6,7 @@ use record::message::{LaneJob, RivalReport};
 use record::results::ErrorReport;
 use record::scenario::{InstanceText, Rival, Run};
 use report::axis::Axis;
+use report::explain::grown;
 use report::number::{count, of};
 use report::proof;
 use yew::prelude::*;
@@ -86,6 +87,9 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 <p class="small" data-testid="status">{ status(&props.lane) }</p>
                 if !props.lane.notice.is_empty() {
                     <p class="small warn" data-testid="notice">{ props.lane.notice.clone() }</p>
+                }
+                for words in props.lane.search.iter().flat_map(|search| grown(search)) {
+                    <p class="small soft" data-testid="diagnosis">{ sentence(&words) }</p>
                 }
                 { reason(props.slot.id, &props.lane, props.draft.is_some().then_some(&writing)) }
                 if let Some(error) = &props.lane.error { { failure(error) } }
@@ -231,6 +235,9 @@ fn buttons(props: &LaneProps, hands: &Hands) -> Html {
             { button("Pause", phase == Phase::Running, act(|hands, at| hands.session.pause(at.lane))) }
             { button("Step", phase.can_go_on(), act(|hands, at| hands.session.search(at.lane, Some(1)))) }
             { button("Stop", phase.can_stop(), act(|hands, at| hands.session.stop(at.lane))) }
+            if over && props.lane.nodes() > 0 {
+                { button("Prove", true, act(|hands, at| hands.session.prove(at.lane))) }
+            }
         </div>
     }
 }

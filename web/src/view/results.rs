@@ -11,7 +11,7 @@ use crate::state::board::Board;
 use crate::state::document::{Document, Slot};
 use crate::state::instances::instance_title;
 use crate::state::lane::Phase;
-use crate::state::outcomes::Outcome;
+use crate::state::outcomes::{MOST, Outcome};
 use crate::view::figure::figure;
 use crate::view::hands::use_hands;
 use crate::view::inspector::InspectorProps as EvidenceProps;
@@ -69,6 +69,11 @@ pub(crate) fn Results(props: &EvidenceProps) -> Html {
                     }
                 </table>
             </div>
+            if document.others.len() * document.slots.len() > MOST {
+                <p class="small" data-testid="kept-most">
+                    { format!("The last {MOST} results on other instances are kept: older ones are run again when they are asked for.") }
+                </p>
+            }
         </>
     }
 }

@@ -16,7 +16,7 @@ use crate::state::pointer::Shared;
 use crate::view::axis::{AxisView, Best};
 use crate::view::hands::{Hands, use_hands};
 use crate::view::lane::LaneView;
-use crate::view::rule::rules;
+use crate::view::rule::{plan, rules};
 use crate::view::shelf::Shelf;
 
 /// Hues, after which they come again.
@@ -168,6 +168,7 @@ fn for_all(document: &Document, board: &Board, hands: &Hands) -> Html {
     html! {
         <div class="acts" role="group" aria-label="All rivals">
             { rules(&document.run, hands) }
+            { plan(document.run.plan.as_ref(), hands) }
             <button type="button" data-testid="run-all" onclick={run}>{ "Run all" }</button>
             <button type="button" data-testid="stop-all" onclick={stop}>{ "Stop all" }</button>
         </div>

@@ -1,7 +1,7 @@
 //! The rules of all rivals: which variable a node is branched on, and which open node comes next.
 
 use record::scenario::{BranchingRule, Preset, Run, Selection};
-use web_sys::HtmlSelectElement;
+use web_sys::{HtmlSelectElement, HtmlTextAreaElement};
 use yew::prelude::*;
 
 use crate::state::document::DocumentAction;
@@ -38,6 +38,21 @@ pub(crate) fn rules(run: &Run, hands: &Hands) -> Html {
             { choice(("branching", "rule"), &RULES, run.branching, Steer::Rule, hands) }
             { choice(("next node", "next"), &NEXT, run.selection, Steer::Next, hands) }
         </>
+    }
+}
+
+/// The plan that every search begins with.
+pub(crate) fn plan(text: Option<&String>, hands: &Hands) -> Html {
+    let document = hands.document.clone();
+    let onchange = Callback::from(move |event: Event| {
+        let area: HtmlTextAreaElement = event.target_unchecked_into();
+        document.dispatch(DocumentAction::Steer(Steer::Plan(area.value())));
+    });
+    html! {
+        <label class="family" title="A round trip, x[Ash, Birch] = 1 or Milk: Depot 2 a line. What it breaks is said in each lane.">
+            { "a plan to begin with" }
+            <textarea data-testid="plan" rows="1" spellcheck="false" value={text.cloned().unwrap_or_default()} {onchange} />
+        </label>
     }
 }
 

@@ -72,5 +72,61 @@ fn origin(origin: tree::Origin) -> Origin {
         tree::Origin::Relaxation => Origin::Relaxation,
         tree::Origin::Rounding => Origin::Rounding,
         tree::Origin::Heuristic(name) => Origin::Heuristic(name),
+        tree::Origin::Given => Origin::Given,
+    }
+}
+
+/// A logged event as the search tells it; what it says of its origin is not read.
+pub(crate) fn logged(event: &Event) -> tree::Event {
+    match *event {
+        Event::Created { node, parent, ref branching } => tree::Event::Created {
+            node: node_of(node),
+            parent: parent.map(node_of),
+            branching: branching.as_ref().map(branch_of),
+        },
+        Event::Solved { node, state, bound, fractional, iterations, rows_added, branch_column } => {
+            tree::Event::Solved {
+                node: node_of(node),
+                state: state_of(state),
+                bound,
+                fractional,
+                iterations,
+                rows_added,
+                branch_column: branch_column.map(model::ColumnId),
+            }
+        }
+        Event::Dropped { node, state } => {
+            tree::Event::Dropped { node: node_of(node), state: state_of(state) }
+        }
+        Event::Incumbent { node, value, .. } => {
+            tree::Event::Incumbent { node: node_of(node), value, origin: tree::Origin::Relaxation }
+        }
+        Event::Bound { bound, nodes } => tree::Event::Bound { bound, nodes },
+    }
+}
+
+fn node_of(node: NodeNumber) -> tree::NodeId {
+    tree::NodeId(node.0)
+}
+
+/// A logged branching as the search tells it.
+pub(crate) fn branch_of(branching: &Branching) -> tree::Branch {
+    let side = match branching.side {
+        Side::AtMost => tree::Side::AtMost,
+        Side::AtLeast => tree::Side::AtLeast,
+    };
+    tree::Branch { column: model::ColumnId(branching.column), side, bound: branching.bound }
+}
+
+fn state_of(state: NodeState) -> tree::NodeState {
+    match state {
+        NodeState::Open => tree::NodeState::Open,
+        NodeState::Branched => tree::NodeState::Branched,
+        NodeState::Integer => tree::NodeState::Integer,
+        NodeState::Infeasible => tree::NodeState::Infeasible,
+        NodeState::Pruned => tree::NodeState::Pruned,
+        NodeState::Closed => tree::NodeState::Closed,
+        NodeState::Unbounded => tree::NodeState::Unbounded,
+        NodeState::Unsolved => tree::NodeState::Unsolved,
     }
 }

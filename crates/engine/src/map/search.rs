@@ -8,7 +8,7 @@ use record::results::{
     WAITS,
 };
 
-use super::{finite, status, tidy};
+use super::{finite, measures, status, tidy};
 
 /// Values of less are not listed.
 const ZERO: f64 = 1e-9;
@@ -16,6 +16,7 @@ const ZERO: f64 = 1e-9;
 /// The report of a search. One that stands still is reported as stopped by a limit: paused.
 pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchReport {
     let summary = search.summary();
+    let measures = search.measures();
     let paused = summary.status == tree::Status::Running;
     let incumbent = summary.incumbent.and_then(finite);
     SearchReport {
@@ -36,6 +37,10 @@ pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchRepor
             fixed: summary.node_work.fixed,
         },
         cuts: search.cuts().map(cuts_report),
+        diagnosis: measures::diagnosis(model, &search.diagnosis(&measures)),
+        estimate: search.estimate().map(measures::estimate),
+        measures: Box::new(measures::measures(&measures)),
+        plan: None,
     }
 }
 
@@ -64,21 +69,7 @@ fn rest(search: &tree::Search) -> &'static str {
 
 /// The report of a search that never began.
 pub(crate) fn nothing_searched(why: &str) -> SearchReport {
-    SearchReport {
-        status: Status::Limit,
-        bound: None,
-        incumbent: None,
-        gap: None,
-        nodes: 0,
-        open: 0,
-        iterations: 0,
-        work: 0,
-        solution: Vec::new(),
-        checked: false,
-        stopped: Some(why.to_owned()),
-        node_work: NodeWorkReport::default(),
-        cuts: None,
-    }
+    SearchReport { status: Status::Limit, stopped: Some(why.to_owned()), ..SearchReport::default() }
 }
 
 /// The report of families in conflict.

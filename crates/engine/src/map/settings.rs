@@ -22,6 +22,7 @@ pub(crate) fn settings(run: &Run, seed: u64) -> tree::Settings {
         priority: run.priority.clone(),
         node_work: node_work(run),
         cuts: cuts(run),
+        heuristics: heuristics(run),
         cutoff: run.best_known,
         node_limit: (run.nodes > 0).then_some(run.nodes),
         iteration_limit: (run.iterations > 0).then_some(run.iterations),
@@ -72,6 +73,18 @@ pub(crate) fn complaints(run: &Run, model: &model::Model) -> Vec<Complaint> {
         }
     };
     unknown.map(complaint).collect()
+}
+
+/// How plans are looked for: the words of the scenario, or the default where it has none.
+fn heuristics(run: &Run) -> tree::Heuristics {
+    let Some(words) = &run.heuristics else { return tree::Heuristics::default() };
+    let has = |wanted: &str| words.iter().any(|word| word == wanted);
+    tree::Heuristics {
+        rounding: has("rounding"),
+        trip: has("round trip") || has("family"),
+        diving: has("diving"),
+        pump: has("feasibility pump"),
+    }
 }
 
 #[cfg(test)]

@@ -18,7 +18,7 @@ const SCENARIO: [&str; 10] =
 const INSTANCE: [&str; 4] = ["reader", "title", "text", "bind"];
 const RIVAL: [&str; 7] = ["title", "from", "text", "mps", "role", "families", "act"];
 const ACT: [&str; 4] = ["after", "do", "node", "on"];
-const RUN: [&str; 13] = [
+const RUN: [&str; 15] = [
     "search",
     "nodes",
     "iterations",
@@ -32,9 +32,18 @@ const RUN: [&str; 13] = [
     "cut_every",
     "cut_rounds",
     "preset",
+    "heuristics",
+    "plan",
 ];
 const NODE_WORK: [(&str, ()); 3] =
     [("propagation", ()), ("reduced costs", ()), ("objective step", ())];
+const HEURISTICS: [(&str, ()); 5] = [
+    ("rounding", ()),
+    ("round trip", ()),
+    ("diving", ()),
+    ("feasibility pump", ()),
+    ("family", ()),
+];
 const STUDIES: [(&str, ()); 10] = [
     ("ladder", ()),
     ("families", ()),
@@ -310,6 +319,11 @@ impl Decoder<'_> {
         for work in node_work.iter().flatten() {
             found.word(work, span.clone(), "node_work", &NODE_WORK);
         }
+        let heuristics = found.texts(table, "heuristics");
+        let span = table.get("heuristics").map(Spanned::span).unwrap_or_default();
+        for heuristic in heuristics.iter().flatten() {
+            found.word(heuristic, span.clone(), "heuristics", &HEURISTICS);
+        }
         Run {
             search: found.flag(table, "search").unwrap_or(usual.search),
             nodes: found.whole(table, "nodes").unwrap_or(usual.nodes),
@@ -324,6 +338,8 @@ impl Decoder<'_> {
             cut_every: found.whole(table, "cut_every").unwrap_or(usual.cut_every),
             cut_rounds: found.whole(table, "cut_rounds").unwrap_or(usual.cut_rounds),
             preset,
+            heuristics: heuristics.or(usual.heuristics),
+            plan: found.text(table, "plan"),
         }
     }
 

@@ -150,6 +150,11 @@ impl Printer {
         if run.cut_rounds != usual.cut_rounds {
             self.pair("cut_rounds", &run.cut_rounds.to_string());
         }
+        let heuristics = run.heuristics.as_ref();
+        if let Some(heuristics) = heuristics.filter(|_| run.heuristics != usual.heuristics) {
+            self.pair("heuristics", &list(heuristics));
+        }
+        self.text_if_some("plan", run.plan.as_deref());
     }
 
     fn study(&mut self, study: &Study) {

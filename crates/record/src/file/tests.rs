@@ -230,7 +230,10 @@ fn run() -> impl Strategy<Value = Run> {
     let cuts =
         option::of(vec(prop::sample::select(vec!["gomory".to_owned(), "mir".to_owned()]), 0..3));
     let works = vec!["propagation".to_owned(), "reduced costs".to_owned()];
-    let lists = (cuts, option::of(vec(prop::sample::select(works), 0..3)), vec("\\PC{1,5}", 0..3));
+    let finds = vec!["diving".to_owned(), "feasibility pump".to_owned()];
+    let finds = option::of(vec(prop::sample::select(finds), 0..3));
+    let works = option::of(vec(prop::sample::select(works), 0..3));
+    let lists = (cuts, works, vec("\\PC{1,5}", 0..3), finds, option::of(any_text()));
     let limits = (any::<u32>(), any::<u64>(), 0.0..1e6);
     (any::<bool>(), limits, option::of(finite()), branching, selection, lists).prop_map(
         |(search, (nodes, iterations, seconds), best_known, branching, selection, lists)| {
@@ -250,6 +253,8 @@ fn run() -> impl Strategy<Value = Run> {
                 cut_every: nodes % 7,
                 cut_rounds: nodes % 3,
                 preset,
+                heuristics: lists.3,
+                plan: lists.4,
             }
         },
     )

@@ -109,7 +109,7 @@ fn hashed(value: &impl serde::Serialize) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::results::{NodeWorkReport, Proof};
+    use crate::results::Proof;
 
     fn root(bound: f64) -> RootReport {
         RootReport {
@@ -135,8 +135,7 @@ mod tests {
             solution: Vec::new(),
             checked: true,
             stopped: stopped.map(str::to_owned),
-            node_work: NodeWorkReport::default(),
-            cuts: None,
+            ..SearchReport::default()
         }
     }
 

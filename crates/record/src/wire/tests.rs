@@ -45,7 +45,7 @@ fn search() -> SearchReport {
         checked: false,
         stopped: Some("the node limit".to_owned()),
         node_work: crate::results::NodeWorkReport { closed: 1, tightened: 22, fixed: 3 },
-        cuts: None,
+        ..SearchReport::default()
     }
 }
 

@@ -1,6 +1,7 @@
 //! Tests of the whole search against enumeration and known trees.
 
 mod acts;
+mod audit;
 mod by_hand;
 mod conflict;
 mod cuts;
@@ -8,8 +9,10 @@ mod cycles;
 mod endings;
 mod enumeration;
 mod eye;
+mod heuristics;
 mod inspection;
 mod jeroslow;
+mod measures;
 mod node_work;
 mod slices;
 pub(crate) mod support;

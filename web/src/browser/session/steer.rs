@@ -126,8 +126,7 @@ mod tests {
                 solution: Vec::new(),
                 checked: false,
                 stopped: Some(stopped.to_owned()),
-                node_work: record::results::NodeWorkReport::default(),
-                cuts: None,
+                ..SearchReport::default()
             }))
         };
         let mut lane = lane();

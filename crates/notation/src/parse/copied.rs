@@ -17,7 +17,10 @@ const INDICES: usize = 4;
 /// The tokens with limits and subscripts where they belong. `O(tokens · reach)`.
 pub(super) fn settled(tokens: &[Token]) -> Vec<Token> {
     let start = tokens.iter().position(opens_model).unwrap_or(tokens.len());
-    let flat = !tokens[start..].iter().any(|t| t.kind == T::Underscore);
+    // a model without a sum, dots or a quantifier has no indices to lose
+    let model = &tokens[start..];
+    let indexed = model.iter().any(|t| matches!(t.kind, T::Sum | T::Dots | T::ForAll));
+    let flat = indexed && !model.iter().any(|t| t.kind == T::Underscore);
     let words = tokens[..start].iter().filter(|t| t.kind == T::Word);
     let declared: BTreeSet<String> = words.map(|t| t.text.clone()).collect();
     let tokens = limits(tokens, &declared);
@@ -238,7 +241,8 @@ fn indices(tokens: &[Token], start: usize) -> BTreeSet<char> {
         };
         // x ∈ X on a line of its own is a domain
         let before = kind(i.wrapping_sub(1));
-        if token.gap.has(Gap::NEWLINE) || before == T::Break || before.is_part() {
+        let domain = matches!(before, T::Break | T::In) || before.is_part();
+        if token.gap.has(Gap::NEWLINE) || domain {
             continue;
         }
         let limit =

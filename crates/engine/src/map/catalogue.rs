@@ -96,7 +96,7 @@ mod tests {
             entries.iter().filter(|e| e.holds(words)).map(|e| e.id.as_str()).collect()
         };
         assert_eq!(found("CORNUEJOLS radii"), ["ufl/radii", "p-median/radius"]);
-        assert_eq!(found("miller 1960 position"), ["atsp/labels", "atsp/loose-labels"]);
+        assert_eq!(found("miller 1960 position round"), ["atsp/labels", "atsp/loose-labels"]);
         assert_eq!(found("").len(), entries.len());
         assert!(found("no such word").is_empty());
     }

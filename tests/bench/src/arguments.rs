@@ -65,11 +65,6 @@ impl Arguments {
         self.seeds.iter().map(ToString::to_string).collect::<Vec<_>>().join(",")
     }
 
-    /// The fresh seeds.
-    pub(crate) fn seeds(&self) -> &[u64] {
-        &self.seeds
-    }
-
     /// Whether a problem is to be measured.
     pub(crate) fn wants(&self, name: &str) -> bool {
         name.contains(&self.filter)

@@ -76,15 +76,16 @@ fn bounds_without_families_are_those_of_highs() {
         for (name, data) in small(id) {
             let one = subject("A", id, &data);
             let model = Rc::clone(&one.model);
-            let found =
-                driven(|desk| study::families::families(desk, vec![one], Plan::default()));
+            let found = driven(|desk| study::families::families(desk, vec![one], Plan::default()));
             let rival = &found.rivals[0];
-            let all: Vec<FamilyId> = (0..model.families().len()).map(FamilyId::from_index).collect();
+            let all: Vec<FamilyId> =
+                (0..model.families().len()).map(FamilyId::from_index).collect();
             assert_eq!(rival.families.len(), all.len(), "{id}");
             assert!(same(rival.bound, value(&model)), "{id} on {name}");
             assert!(same(rival.bare, value(&model.left_out(&all))), "{id} on {name}");
             for (place, share) in rival.families.iter().enumerate() {
-                let others: Vec<FamilyId> = all.iter().copied().filter(|f| f.index() != place).collect();
+                let others: Vec<FamilyId> =
+                    all.iter().copied().filter(|f| f.index() != place).collect();
                 let without = value(&model.left_out(&[all[place]]));
                 let alone = value(&model.left_out(&others));
                 assert!(same(share.without, without), "{id} on {name}: {share:?} {without:?}");
@@ -150,7 +151,8 @@ fn the_factor_that_a_switch_needs_is_that_of_highs() {
 /// The largest coefficient that the rows of a family need, by HiGHS.
 fn largest(model: &Model, share: &FamilyTightening, variable: &str) -> f64 {
     let rows = (0..model.row_count()).map(RowId::from_index);
-    let own = rows.filter(|&row| model.families()[model.row_family(row).index()].name == share.name);
+    let own =
+        rows.filter(|&row| model.families()[model.row_family(row).index()].name == share.name);
     let needs = own.filter_map(|row| {
         let switch = model.row_entries(row).iter().map(|(column, _)| *column).find(|column| {
             let column = &model.columns()[column.index()];
@@ -166,8 +168,7 @@ fn the_violation_that_refutes_an_order_is_the_largest_by_highs() {
     for (name, data) in small("ufl/joined") {
         let subjects = vec![subject("A", "ufl/split", &data), subject("B", "ufl/joined", &data)];
         let (split, joined) = (Rc::clone(&subjects[0].model), Rc::clone(&subjects[1].model));
-        let order =
-            driven(|desk| study::order::order(desk, subjects, Plan::default())).remove(0);
+        let order = driven(|desk| study::order::order(desk, subjects, Plan::default())).remove(0);
         assert_eq!(order.level, OrderLevel::Theorem, "{name}");
         let [forth, back] = &order.certificates;
         assert_eq!((forth.holds, back.holds), (Some(true), Some(false)), "{name}");
@@ -181,7 +182,8 @@ fn the_violation_that_refutes_an_order_is_the_largest_by_highs() {
             .map(|(column, a)| {
                 let wanted = split.column_name(*column);
                 let columns = (0..joined.columns().len()).map(ColumnId::from_index);
-                let found = columns.into_iter().find(|&column| joined.column_name(column) == wanted);
+                let found =
+                    columns.into_iter().find(|&column| joined.column_name(column) == wanted);
                 (found.unwrap(), a.clone())
             })
             .collect();

@@ -29,9 +29,11 @@ fn texts(folder: &Path, found: &mut Vec<(String, String)>) {
 
 /// One document with everything on pages of their own.
 fn document(found: &[(String, String)]) -> String {
+    // A Greek letter within a subscript of several, as in x_{iτ}, stays the letter that it is: as
+    // a command it would read back as another name. LuaTeX sets it; pdfTeX is told how.
     let mut out = String::from(
         "\\documentclass{article}\n\\usepackage[a3paper,landscape]{geometry}\n\\usepackage[utf8]{inputenc}\n\
-         \\usepackage{amsmath,amssymb}\n\\begin{document}\n",
+         \\usepackage{amsmath,amssymb}\n\\DeclareUnicodeCharacter{03C4}{\\ensuremath{\\tau}}\n\\begin{document}\n",
     );
     for (name, text) in found {
         let parsed = parse(text);

@@ -12,6 +12,8 @@ mod explanations;
 mod families;
 #[path = "command/launch.rs"]
 mod launch;
+#[path = "command/prove.rs"]
+mod prove;
 #[path = "command/read.rs"]
 mod read;
 #[path = "command/studies.rs"]

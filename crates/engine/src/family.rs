@@ -262,17 +262,14 @@ fn wagner_whitin(chain: &[Period]) -> Vec<bool> {
     let mut best = vec![(0.0, 0); n + 1];
     for end in 1..=n {
         best[end] = (f64::INFINITY, 0);
-        for start in 0..end {
-            let run = &chain[start..end];
-            let (mut held, mut sum) = (0.0, best[start].0);
-            let needed: f64 = run.iter().map(|p| p.demand).sum();
-            if needed > 0.0 {
-                sum += run[0].fixed + run[0].each * needed;
-            }
-            for period in run.iter().rev() {
-                sum += period.hold * held;
-                held += period.demand;
-            }
+        // The run grows towards earlier periods: what later ones need is held through each.
+        let (mut needed, mut holding) = (0.0, 0.0);
+        for start in (0..end).rev() {
+            let first = &chain[start];
+            holding += first.hold * needed;
+            needed += first.demand;
+            let made = if needed > 0.0 { first.fixed + first.each * needed } else { 0.0 };
+            let sum = best[start].0 + holding + made;
             if sum < best[end].0 {
                 best[end] = (sum, start);
             }

@@ -100,7 +100,7 @@ fn begun(
             }
             "order" => {
                 let orders = study::order::order(desk, subjects, plan).await;
-                orders.into_iter().map(Report::Order).collect()
+                orders.into_iter().map(|one| Report::Order(Box::new(one))).collect()
             }
             "equivalence" => {
                 let verdicts = study::court::court(desk, subjects, plan).await;

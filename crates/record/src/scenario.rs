@@ -223,10 +223,15 @@ pub const CUT_CLASSES: [&str; 11] = [
     "round trip",
 ];
 
+/// How good plans are looked for, as a scenario names it.
+pub const HEURISTICS: [&str; 5] =
+    ["rounding", "round trip", "diving", "feasibility pump", "family"];
+
 /// Settings that go together.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
 pub enum Preset {
-    /// Nothing that hides what is compared: no cuts, no propagation, no search for solutions.
+    /// Nothing that hides what is compared: no cuts, no propagation, and of heuristics only those
+    /// that cost no relaxation.
     #[default]
     Bare,
     /// As a production solver would: everything there is.
@@ -252,6 +257,7 @@ impl Run {
                 cuts: words(&CUT_CLASSES),
                 cut_every: 4,
                 cut_rounds: 1,
+                heuristics: words(&HEURISTICS),
                 preset,
                 ..usual
             },

@@ -33,7 +33,7 @@ pub enum Report {
     /// Whether two rivals are the same problem.
     Equivalence(Box<Equivalence>),
     /// Which of two rivals has the stronger relaxation.
-    Order(Order),
+    Order(Box<Order>),
     /// How much the coefficients of binaries can be tightened, and what that buys.
     Tightening(Tightening),
     /// Coefficients: their range, and how much can leak through them.
@@ -88,7 +88,7 @@ impl Serialize for Line<'_> {
             Report::Ladder(report) => self.named(report, serializer),
             Report::Families(report) => self.named(report, serializer),
             Report::Equivalence(report) => self.named(report.as_ref(), serializer),
-            Report::Order(report) => self.named(report, serializer),
+            Report::Order(report) => self.named(report.as_ref(), serializer),
             Report::Tightening(report) => self.named(report, serializer),
             Report::Numerics(report) => self.named(report, serializer),
             Report::Cuts(report) => self.named(report, serializer),

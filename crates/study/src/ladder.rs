@@ -165,8 +165,7 @@ fn search_rung(solved: &Solved) -> Rung {
 
 /// The model with the bounds that follow from its rows; none where they leave nothing.
 async fn propagated(desk: &Desk, model: &Rc<Model>) -> (Option<Rc<Model>>, String) {
-    desk.spend(model.row_count() as u64).await;
-    match propagate(model) {
+    match propagate(desk, model).await {
         None => (None, "no point meets the bounds that follow from the rows".to_owned()),
         Some((_, 0)) => (Some(Rc::clone(model)), "no bound is tighter".to_owned()),
         Some((bounds, count)) => (

@@ -100,7 +100,7 @@ impl Pair<'_> {
             if over.is_none_or(|over| over > VIOLATED) && !solved.is_infeasible() {
                 out.holds = Some(false);
                 out.witness.clone_from(&claim.name);
-                out.violation = over.unwrap_or(f64::MAX);
+                out.violation = over;
                 return out;
             }
             let proved = solved.checked_bound.as_ref().is_some_and(|bound| *bound <= claim.side);

@@ -3,6 +3,8 @@
 
 use model::{ColumnId, Model, Number, RowId};
 
+use crate::desk::Desk;
+
 /// Rounds over all rows at most.
 const MOST_ROUNDS: u32 = 10;
 /// A bound of a continuous column with a larger denominator is not taken: chains of such bounds
@@ -41,7 +43,7 @@ pub(crate) fn bounds_of(model: &Model) -> Vec<Bounds> {
 
 /// The bounds that follow from the rows that are in, and how many of them are new. `None` where
 /// the rows leave nothing. `O(rounds · non-zeros)`.
-pub(crate) fn propagate(model: &Model) -> Option<(Vec<Bounds>, u32)> {
+pub(crate) async fn propagate(desk: &Desk, model: &Model) -> Option<(Vec<Bounds>, u32)> {
     let mut bounds = bounds_of(model);
     let rows = (0..model.row_count()).map(RowId::from_index).filter(|&row| model.row_is_in(row));
     let halves: Vec<AtMost> =
@@ -50,6 +52,7 @@ pub(crate) fn propagate(model: &Model) -> Option<(Vec<Bounds>, u32)> {
     for _ in 0..MOST_ROUNDS {
         let before = tightened;
         for half in &halves {
+            desk.spend(half.entries.len() as u64).await;
             tightened += narrow(model, half, &mut bounds)?;
         }
         if tightened == before {

@@ -200,7 +200,7 @@ fn added_up_links_are_certified_to_be_weaker() {
     assert_eq!((forth.holds, forth.proved), (Some(true), forth.rows));
     // A single link can be broken over the added-up relaxation, by at most 1 − 1/|J|.
     assert_eq!(back.holds, Some(false));
-    assert!((back.violation - 2.0 / 3.0).abs() < 1e-9, "{back:?}");
+    assert!(close(back.violation, Some(2.0 / 3.0)), "{back:?}");
 }
 
 #[test]

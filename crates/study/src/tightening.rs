@@ -55,7 +55,7 @@ async fn of_rival(desk: &Desk, subject: &Subject, plan: &Plan) -> RivalTightenin
         left_out: count(all.len() - looked_at),
         ..RivalTightening::default()
     };
-    let bounds = propagate(model).map(|(bounds, _)| bounds);
+    let bounds = propagate(desk, model).await.map(|(bounds, _)| bounds);
     let (mut by_data, mut by_relaxation) = (Rewritten::new(), Rewritten::new());
     for (place, switched) in all.iter().take(looked_at).enumerate() {
         say(format!("row {} of {looked_at} that a binary switches", place + 1));

@@ -189,6 +189,6 @@ fn the_violation_that_refutes_an_order_is_the_largest_by_highs() {
             .collect();
         let most = value(&joined.priced(Sense::Maximise, &mapped)).unwrap();
         let side = nearest_f64(row.upper.as_ref().unwrap());
-        assert!(agree(most - side, back.violation, 1e-7), "{name}: {most} {side} {back:?}");
+        assert!(same(back.violation, Some(most - side)), "{name}: {most} {side} {back:?}");
     }
 }

@@ -9,8 +9,9 @@ use super::Origin;
 use super::fields::{Findings, Table};
 use crate::place::Finding;
 use crate::scenario::{
-    Act, ActKind, BranchingRule, CUT_CLASSES, FamilyState, InstanceText, MOST_ACTS, MOST_INSTANCES,
-    MOST_RIVALS, PRESETS, Rival, Role, Run, Scenario, Selection, Study, reader_and_part,
+    Act, ActKind, BranchingRule, CUT_CLASSES, FamilyState, HEURISTICS, InstanceText, MOST_ACTS,
+    MOST_INSTANCES, MOST_RIVALS, PRESETS, Rival, Role, Run, Scenario, Selection, Study,
+    reader_and_part,
 };
 
 const SCENARIO: [&str; 10] =
@@ -37,13 +38,6 @@ const RUN: [&str; 15] = [
 ];
 const NODE_WORK: [(&str, ()); 3] =
     [("propagation", ()), ("reduced costs", ()), ("objective step", ())];
-const HEURISTICS: [(&str, ()); 5] = [
-    ("rounding", ()),
-    ("round trip", ()),
-    ("diving", ()),
-    ("feasibility pump", ()),
-    ("family", ()),
-];
 const STUDIES: [(&str, ()); 10] = [
     ("ladder", ()),
     ("families", ()),
@@ -320,9 +314,10 @@ impl Decoder<'_> {
             found.word(work, span.clone(), "node_work", &NODE_WORK);
         }
         let heuristics = found.texts(table, "heuristics");
+        let known = HEURISTICS.map(|word| (word, ()));
         let span = table.get("heuristics").map(Spanned::span).unwrap_or_default();
         for heuristic in heuristics.iter().flatten() {
-            found.word(heuristic, span.clone(), "heuristics", &HEURISTICS);
+            found.word(heuristic, span.clone(), "heuristics", &known);
         }
         Run {
             search: found.flag(table, "search").unwrap_or(usual.search),

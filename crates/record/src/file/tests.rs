@@ -253,7 +253,7 @@ fn run() -> impl Strategy<Value = Run> {
                 cut_every: nodes % 7,
                 cut_rounds: nodes % 3,
                 preset,
-                heuristics: lists.3,
+                heuristics: lists.3.or(of.heuristics),
                 plan: lists.4,
             }
         },

@@ -82,8 +82,8 @@ pub struct Certificate {
     pub proved: u32,
     /// A row that can be violated: an objective for which the other rival is weaker.
     pub witness: String,
-    /// By how much.
-    pub violation: f64,
+    /// By how much; `None` where that has no end.
+    pub violation: Option<f64>,
     /// Why it was not tried, or not to the end.
     pub why: String,
 }

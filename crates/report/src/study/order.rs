@@ -27,8 +27,10 @@ fn rows(certificate: &Certificate, other: &str) -> String {
     match certificate.holds {
         Some(true) => format!("all {} of {other}", certificate.rows),
         Some(false) => {
-            let by = short(certificate.violation);
-            format!("not {} of {other}: it can be violated by {by}", certificate.witness)
+            let by = certificate
+                .violation
+                .map_or_else(|| "without end".to_owned(), |by| format!("by {}", short(by)));
+            format!("not {} of {other}: it can be violated {by}", certificate.witness)
         }
         None => format!("not tried: {}", certificate.why),
     }

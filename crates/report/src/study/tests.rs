@@ -23,10 +23,10 @@ fn a_bound_on_one_instance_is_not_called_never_weaker() {
         level: OrderLevel::Observed,
         ..Order::default()
     };
-    let said = verdict_of(&Report::Order(order.clone()));
+    let said = verdict_of(&Report::Order(Box::new(order.clone())));
     assert!(said.contains("observed on this instance") && !said.contains("never"), "{said}");
     let theorem = Order { level: OrderLevel::Theorem, source: "Padberg".to_owned(), ..order };
-    let said = verdict_of(&Report::Order(theorem));
+    let said = verdict_of(&Report::Order(Box::new(theorem)));
     assert_eq!(said, "A ⪰ B: A is never weaker than B – theorem: Padberg.");
 }
 

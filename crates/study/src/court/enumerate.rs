@@ -44,7 +44,9 @@ impl Case<'_> {
             }
             self.say(&format!("every plan of sub-instances of size {size}"));
             match part.compared().await {
-                Compared::Same(0) => {}
+                Compared::Same(0) => {
+                    findings.note("every plan", format!("none on the first {size}"), None, 0);
+                }
                 Compared::Same(plans) => {
                     compared.push((size, plans));
                     findings.compared = Some(size);
@@ -85,7 +87,13 @@ impl Case<'_> {
     /// Compares all plans of models that cannot be made smaller, where they are few.
     async fn enumeration(&self, findings: &mut Findings) {
         let [a, b] = self.rivals;
-        if self.shared.deciding(&a.model, &b.model).len() > MOST_COLUMNS {
+        let deciding = self.shared.deciding(&a.model, &b.model).len();
+        if deciding > MOST_COLUMNS {
+            let outcome = format!(
+                "not tried: without data they cannot be made smaller, and {deciding} columns are more \
+                 than {MOST_COLUMNS}"
+            );
+            findings.note("every plan", outcome, None, 0);
             return;
         }
         self.say("every plan");

@@ -1,13 +1,11 @@
 //! Saved logs proved by a call that did not run them, and logs that were tampered with: byte for
 //! byte as a file, for every leaf.
 
-#![expect(clippy::expect_used, reason = "the helpers of these tests fail loudly")]
-
-use std::process::{Command, Output};
-
 use record::event::{Event, Log, NodeNumber, NodeState, Side};
 use record::ground::FoundRow;
 use record::log::{decode, encode};
+
+use crate::launch::hullward;
 
 /// Seven stops, not symmetric.
 const STOPS: &str = "\
@@ -37,10 +35,6 @@ fn scenarios() -> Vec<(&'static str, String)> {
     ]
 }
 
-fn hullward(words: &[&str]) -> Output {
-    Command::new(env!("CARGO_BIN_EXE_hullward")).args(words).output().expect("it runs")
-}
-
 fn path(name: &str) -> String {
     format!("{}/prove-{name}", env!("CARGO_TARGET_TMPDIR"))
 }
@@ -49,7 +43,7 @@ fn path(name: &str) -> String {
 fn saved(name: &str, scenario: &str) -> Log {
     let (text, log) = (path(&format!("{name}.toml")), path(&format!("{name}.log")));
     std::fs::write(&text, scenario).expect("written");
-    let run = hullward(&["run", &text, "--log", &log]);
+    let run = hullward(&["run", &text, "--log", &log], "");
     assert_eq!(run.status.code(), Some(0), "{name}: {run:?}");
     decode(&std::fs::read(&log).expect("saved")).expect("a log")
 }
@@ -58,7 +52,7 @@ fn saved(name: &str, scenario: &str) -> Log {
 fn proved(name: &str, log: &Log) -> (Option<i32>, String) {
     let file = path(&format!("{name}.again.log"));
     std::fs::write(&file, encode(log).expect("a log")).expect("written");
-    let output = hullward(&["prove", &file]);
+    let output = hullward(&["prove", &file], "");
     let words = String::from_utf8(output.stdout).expect("text");
     let wrong = String::from_utf8(output.stderr).expect("text");
     (output.status.code(), words + &wrong)
@@ -201,7 +195,7 @@ fn other_rows_another_scenario_and_older_logs_are_refused() {
     let (status, words) = proved("rows", &older);
     assert_eq!(status, Some(2), "{words}");
     assert!(words.contains("does not say what it rests on"), "{words}");
-    let missing = hullward(&["prove", "/no/such.log"]);
+    let missing = hullward(&["prove", "/no/such.log"], "");
     assert_eq!(missing.status.code(), Some(2));
 }
 
@@ -210,8 +204,8 @@ fn a_search_that_a_limit_stopped_is_no_proof() {
     let scenario = scenarios().remove(0).1.replace("[run]", "[run]\nnodes = 3");
     let (text, log) = (path("limit.toml"), path("limit.log"));
     std::fs::write(&text, scenario).expect("written");
-    assert_eq!(hullward(&["run", &text, "--log", &log]).status.code(), Some(1));
-    let output = hullward(&["prove", &log, "--json"]);
+    assert_eq!(hullward(&["run", &text, "--log", &log], "").status.code(), Some(1));
+    let output = hullward(&["prove", &log, "--json"], "");
     assert_eq!(output.status.code(), Some(1), "{output:?}");
     let found: serde_json::Value = serde_json::from_slice(&output.stdout).expect("JSON");
     assert_eq!(found["judgement"], "open");

@@ -77,7 +77,7 @@ impl Shape {
         let entries = entries(model, row, sign);
         let mut opening = entries.iter().filter(|entry| entry.1 < 0.0);
         let (Some(&(y, b)), None) = (opening.next(), opening.next()) else { return };
-        if !is_binary(model, y) || entries.len() < 2 {
+        if !model.is_binary(y) || entries.len() < 2 {
             return;
         }
         // Of a row for all and rows for each, that for all says what there is room for.
@@ -355,11 +355,4 @@ fn float_sides(model: &Model, row: RowId) -> (f64, f64) {
 
 fn cost(model: &Model, column: ColumnId) -> f64 {
     model.numbers().float(model.columns()[column.index()].cost)
-}
-
-fn is_binary(model: &Model, column: ColumnId) -> bool {
-    let found = &model.columns()[column.index()];
-    let is =
-        |id: Option<model::NumberId>, value| id.is_some_and(|n| model.numbers().float(n) == value);
-    found.integer && is(found.lower, 0.0) && is(found.upper, 1.0)
 }

@@ -277,6 +277,16 @@ impl Model {
         format!("{name}[{}]", parts.join(separator))
     }
 
+    /// Whether a column must be 0 or 1: whole, between these bounds.
+    #[must_use]
+    pub fn is_binary(&self, column: ColumnId) -> bool {
+        let column = &self.columns[column.index()];
+        let is = |id: Option<NumberId>, value: &Number| {
+            id.is_some_and(|id| self.numbers.exact(id) == value)
+        };
+        column.integer && is(column.lower, &Number::ZERO) && is(column.upper, &Number::ONE)
+    }
+
     /// The column of a variable at an index tuple. `O(columns of the variable)`.
     #[must_use]
     pub fn find_column(&self, variable: &str, tuple: &[&str]) -> Option<ColumnId> {

@@ -129,9 +129,8 @@ fn worst_column(model: &Model, columns: &[Range]) -> (f64, String) {
 fn leak(model: &Model, row: RowId, worst: &mut (f64, String)) {
     let (mut switch, mut rest) = (Range::default(), Range::default());
     for &(column, a) in model.row_entries(row) {
-        let column = &model.columns()[column.index()];
-        let binary = column.integer && column.upper.is_some_and(|id| size(model, id) == 1.0);
-        if binary { switch.note(size(model, a)) } else { rest.note(size(model, a)) }
+        let range = if model.is_binary(column) { &mut switch } else { &mut rest };
+        range.note(size(model, a));
     }
     let (Some((_, largest)), Some((smallest, _))) = (switch.0, rest.0) else { return };
     let opened = largest * INTEGRALITY / smallest;

@@ -2,7 +2,7 @@
 
 use std::collections::BTreeMap;
 
-use model::{ColumnId, Model, Number, NumberId};
+use model::{ColumnId, Model};
 
 use crate::subject::Subject;
 
@@ -107,13 +107,4 @@ fn is_whole(a: &Model, b: &Model, (left, right): (ColumnId, ColumnId)) -> bool {
 pub(crate) fn is_boxed(model: &Model, column: ColumnId) -> bool {
     let column = &model.columns()[column.index()];
     column.lower.is_some() && column.upper.is_some()
-}
-
-/// Whether a column must be 0 or 1.
-pub(crate) fn is_binary(model: &Model, column: ColumnId) -> bool {
-    let column = &model.columns()[column.index()];
-    let is = |id: Option<NumberId>, value: &Number| {
-        id.is_some_and(|id| model.numbers().exact(id) == value)
-    };
-    column.integer && is(column.lower, &Number::ZERO) && is(column.upper, &Number::ONE)
 }

@@ -16,7 +16,6 @@ use record::study::{FamilyTightening, RivalTightening, Tightening};
 use crate::desk::Desk;
 use crate::plan::Plan;
 use crate::propagate::{AtMost, Bounds, most, propagate, sides};
-use crate::shared::is_binary;
 use crate::subject::Subject;
 use crate::words::{exact, row as named};
 
@@ -111,7 +110,7 @@ fn switch_of(model: &Model, row: RowId) -> Option<Switched> {
     let largest = half.entries.iter().map(|(_, a)| size(a)).max()?;
     let mut largest = half.entries.iter().filter(|(_, a)| size(a) == largest);
     let (switch, coefficient) = largest.next().filter(|_| largest.next().is_none())?.clone();
-    is_binary(model, switch).then_some(Switched { row, half, turned, switch, coefficient })
+    model.is_binary(switch).then_some(Switched { row, half, turned, switch, coefficient })
 }
 
 /// What the rest can reach at most by the bounds.

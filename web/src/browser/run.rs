@@ -7,7 +7,7 @@ use std::collections::VecDeque;
 use gloo_timers::callback::Timeout;
 use record::message::{Envelope, LaneJob, Reply, Request, RunNumber};
 use record::opinion::Opinion;
-use record::results::Status;
+use record::results::{Judgement, Status};
 use record::scenario::Rival;
 use report::audit::sentences;
 
@@ -185,7 +185,11 @@ impl LaneRun {
                 Some(LaneAction::Failed(error))
             }
             Reply::Acted(acted) => refusal(&acted, &self.columns).map(LaneAction::Notice),
-            Reply::Audited(found) => Some(LaneAction::Notice(sentences(&found).join(" "))),
+            Reply::Audited(found) => {
+                let words = sentences(&found).join(" ");
+                let proved = found.judgement == Judgement::Proved;
+                Some(if proved { LaneAction::Proved(words) } else { LaneAction::Notice(words) })
+            }
             Reply::Relaxation(Err(why)) => Some(LaneAction::Second(Opinion::Silent(why))),
             Reply::Checked(_)
             | Reply::Explained(_)

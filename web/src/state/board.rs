@@ -89,6 +89,8 @@ pub(crate) enum LaneAction {
     Failed(ErrorReport),
     /// Something happened to the worker.
     Notice(String),
+    /// The ended search was proved once more.
+    Proved(String),
 }
 
 impl Reducible for Board {
@@ -240,6 +242,9 @@ impl Lane {
                 self.phase = Phase::Failed;
             }
             LaneAction::Notice(notice) => self.notice = notice,
+            LaneAction::Proved(sentence) => {
+                (self.proved, self.notice) = (sentence, String::new());
+            }
         }
     }
 

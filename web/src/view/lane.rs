@@ -88,6 +88,9 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 if !props.lane.notice.is_empty() {
                     <p class="small warn" data-testid="notice">{ props.lane.notice.clone() }</p>
                 }
+                if !props.lane.proved.is_empty() {
+                    <p class="small" data-testid="proved">{ props.lane.proved.clone() }</p>
+                }
                 for words in props.lane.search.iter().flat_map(|search| grown(search)) {
                     <p class="small soft" data-testid="diagnosis">{ sentence(&words) }</p>
                 }

@@ -8,7 +8,6 @@ use record::study::Counterexample;
 
 use super::plans::{self, Outcome, Placed};
 use super::{Case, Findings};
-use crate::shared::is_binary;
 use crate::subject::Subject;
 use crate::words::{of, same};
 
@@ -142,9 +141,8 @@ impl Case<'_> {
     pub(crate) async fn compared(&self) -> Compared {
         let [a, b] = self.rivals;
         let deciding = self.shared.deciding(&a.model, &b.model);
-        let binary = |pair: &(ColumnId, ColumnId)| {
-            is_binary(&a.model, pair.0) || is_binary(&b.model, pair.1)
-        };
+        let binary =
+            |pair: &(ColumnId, ColumnId)| a.model.is_binary(pair.0) || b.model.is_binary(pair.1);
         if !deciding.iter().all(binary) {
             return Compared::Open("plans are not of 0 and 1 alone".to_owned());
         }
@@ -230,7 +228,7 @@ fn restricted(
     deciding: &[(ColumnId, ColumnId)],
     own: impl Fn(&(ColumnId, ColumnId)) -> ColumnId,
 ) -> Model {
-    let loose = deciding.iter().map(own).filter(|&column| !is_binary(model, column));
+    let loose = deciding.iter().map(own).filter(|&column| !model.is_binary(column));
     model.whole(&loose.collect::<Vec<_>>())
 }
 

@@ -120,3 +120,19 @@ async fn a_search_pauses_steps_and_goes_on() -> Outcome<()> {
     })
     .await
 }
+
+#[tokio::test(flavor = "multi_thread")]
+async fn an_ended_search_is_proved_again_at_a_button() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        status(browser, "C", "root solved").await?;
+        button(browser, "C", "run").await?.click().await?;
+        status(browser, "C", "159 is optimal").await?;
+        button(browser, "C", "prove").await?.click().await?;
+        let said = async || {
+            let words = text(browser, "C", "proved").await?;
+            Ok(words.contains("Proved again: no plan is better than 159"))
+        };
+        browser.until("the search is proved again", SOON, said).await
+    })
+    .await
+}

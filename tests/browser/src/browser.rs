@@ -17,6 +17,8 @@ use crate::{Outcome, fault};
 pub const SOON: Duration = Duration::from_secs(15);
 
 const BETWEEN_LOOKS: Duration = Duration::from_millis(50);
+/// Looks in a row at which a control that is clicked, and the page around it, must be the same.
+const STILL: u32 = 4;
 const MARK: &str = "data-found-by-test";
 
 /// A browser with the page open.
@@ -137,7 +139,9 @@ impl Browser {
     pub async fn find(&self, role: &str, name: &str) -> Outcome<Element> {
         let begun = Instant::now();
         loop {
-            if let Some(first) = self.find_all(role, name).await?.into_iter().next() {
+            if let Some(first) = self.find_all(role, name).await?.into_iter().next()
+                && self.is_still(role, &first).await?
+            {
                 return Ok(first);
             }
             if begun.elapsed() > SOON {
@@ -146,6 +150,21 @@ impl Browser {
             }
             sleep(BETWEEN_LOOKS).await;
         }
+    }
+
+    /// Whether a button stands still, as one that is clicked must; others need not.
+    async fn is_still(&self, role: &str, element: &Element) -> Outcome<bool> {
+        if role != "button" {
+            return Ok(true);
+        }
+        let before = self.place(element).await?;
+        for _ in 0..STILL {
+            sleep(BETWEEN_LOOKS).await;
+            if before.is_null() || self.place(element).await? != before {
+                return Ok(false);
+            }
+        }
+        Ok(true)
     }
 
     /// All elements with this role whose accessible names hold `name`, as they are now.
@@ -212,12 +231,13 @@ impl Browser {
     /// # Errors
     /// As [`Browser::select`], or that it moves for long.
     pub async fn still(&self, selector: &str) -> Outcome<Element> {
-        let mut before = Value::Null;
+        let (mut before, mut looks) = (Value::Null, 0);
         let begun = Instant::now();
         loop {
             let element = self.select(selector).await?;
             let now = self.place(&element).await?;
-            if now == before && !now.is_null() {
+            looks = if now == before && !now.is_null() { looks + 1 } else { 0 };
+            if looks == STILL {
                 return Ok(element);
             }
             if begun.elapsed() > SOON {
@@ -234,7 +254,8 @@ impl Browser {
                       if (!element.isConnected) return null; \
                       element.scrollIntoView({ block: 'nearest' }); \
                       const box = element.getBoundingClientRect(); \
-                      return [box.x, box.y, box.width, box.height, scrollY]";
+                      return [box.x, box.y, box.width, box.height, scrollY, \
+                      document.documentElement.scrollHeight]";
         let place = self.script_with(script, vec![serde_json::to_value(element)?]).await;
         // The element may have been replaced since it was found.
         Ok(place.unwrap_or(Value::Null))

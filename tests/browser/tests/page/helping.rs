@@ -5,7 +5,7 @@ use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::screen::Screen;
 use hullward_tests_browser::visit::{Source, visit};
 
-use crate::lanes::{button, part};
+use crate::lanes::{button, part, status};
 
 async fn guide_shows(browser: &Browser, selector: &str, word: &str) -> Outcome<()> {
     let selector = format!("{} {selector}", part("A", "guide"));
@@ -20,6 +20,7 @@ async fn guide_shows(browser: &Browser, selector: &str, word: &str) -> Outcome<(
 #[tokio::test(flavor = "multi_thread")]
 async fn an_example_is_read_while_it_is_changed() -> Outcome<()> {
     visit(Source::Server, async |browser| {
+        status(browser, "A", "root solved").await?;
         button(browser, "A", "notation").await?.click().await?;
         button(browser, "A", "help").await?.click().await?;
         guide_shows(browser, "ul", "Families over subsets").await?;
@@ -28,11 +29,7 @@ async fn an_example_is_read_while_it_is_changed() -> Outcome<()> {
         browser.paste(&field, "minimise\n  z + 2 w\nsubject to\n  z ≥ 1  (one)\n").await?;
         guide_shows(browser, "[data-testid=notation-remarks]", "not declared").await?;
         // A mend that is one click away, and the way back.
-        browser
-            .select(&format!("{} [data-testid=mend]", part("A", "guide")))
-            .await?
-            .click()
-            .await?;
+        browser.still(&format!("{} [data-testid=mend]", part("A", "guide"))).await?.click().await?;
         let gone = async || {
             let script = "return document.querySelector('[data-testid=guide] .errors') === null";
             Ok(browser.script(script).await? == true)
@@ -48,6 +45,7 @@ async fn an_example_is_read_while_it_is_changed() -> Outcome<()> {
 #[tokio::test(flavor = "multi_thread")]
 async fn every_section_opens_to_an_example_without_errors() -> Outcome<()> {
     visit(Source::Server, async |browser| {
+        status(browser, "A", "root solved").await?;
         button(browser, "A", "notation").await?.click().await?;
         button(browser, "A", "help").await?.click().await?;
         guide_shows(browser, "ul", "Arithmetic on data").await?;
@@ -85,6 +83,7 @@ subject to
 #[tokio::test(flavor = "multi_thread")]
 async fn a_pitfall_is_listed_and_says_what_it_means() -> Outcome<()> {
     visit(Source::File, async |browser| {
+        status(browser, "A", "root solved").await?;
         button(browser, "A", "notation").await?.click().await?;
         button(browser, "A", "edit").await?.click().await?;
         let field = browser.select(&part("A", "notation-text")).await?;

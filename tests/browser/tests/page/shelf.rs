@@ -42,7 +42,7 @@ async fn the_catalogue_is_searched_and_an_entry_joins() -> Outcome<()> {
         let before = before.await?.as_u64().unwrap_or_default();
         let none = "return document.querySelector('[data-testid=shelf]') === null";
         assert_eq!(browser.script(none).await?, true, "nothing is made before it is opened");
-        browser.select("[data-testid=browse]").await?.click().await?;
+        browser.still("[data-testid=browse]").await?.click().await?;
         holds(browser, "[data-testid=shelf] [role=status]", "137 formulations, in all").await?;
         holds(browser, "[data-testid=shelf]", "Position labels (Miller").await?;
 
@@ -75,9 +75,9 @@ async fn the_catalogue_is_searched_and_an_entry_joins() -> Outcome<()> {
             assert_eq!(browser.script(wide).await?, true, "{screen:?}");
         }
         browser.look(Screen::ALL[0]).await?;
-        browser.select("[data-testid=use]").await?.click().await?;
+        browser.still("[data-testid=use]").await?.click().await?;
         lanes(browser, [before + 1, 0]).await?;
-        browser.select("[data-testid=copy-entry]").await?.click().await?;
+        browser.still("[data-testid=copy-entry]").await?.click().await?;
         lanes(browser, [before + 2, 1]).await?;
         let title =
             "return [...document.querySelectorAll('[data-testid=rival-title]')].at(-1).value";

@@ -14,6 +14,8 @@ pub struct Axis {
     pub high: f64,
     /// Distance between labelled ticks.
     pub step: f64,
+    /// The domain of which `low..=high` is the part in view: what lies beyond it stands at its ends.
+    pub whole: (f64, f64),
 }
 
 impl Axis {
@@ -25,7 +27,20 @@ impl Axis {
         let ticks = ticks.clamp(2, MOST_TICKS);
         let step = round_step((high - low) / f64::from(ticks));
         let half = step / 2.0;
-        Self { low: (low / half).floor() * half, high: (high / half).ceil() * half, step }
+        let (low, high) = ((low / half).floor() * half, (high / half).ceil() * half);
+        Self { low, high, step, whole: (low, high) }
+    }
+
+    /// A part of this axis, as it stands, with about `ticks` labelled ticks of its own. A part
+    /// without length is the axis itself.
+    #[must_use]
+    pub fn part(&self, (low, high): (f64, f64), ticks: u32) -> Self {
+        if high - low > 0.0 {
+            let step = round_step((high - low) / f64::from(ticks.clamp(2, MOST_TICKS)));
+            Self { low, high, step, whole: self.whole }
+        } else {
+            *self
+        }
     }
 
     /// The labelled ticks from left to right.
@@ -54,12 +69,20 @@ impl Axis {
         if self.step >= 1e9 { number::short(tick) } else { number::fixed(tick, decimals) }
     }
 
-    /// Where a value stands on a stretch of `width`; values outside stand at the ends.
+    /// Where a value stands on a stretch of `width`; values outside the whole domain stand at its
+    /// ends, those outside the part in view stand outside the stretch.
     #[must_use]
     pub fn place(&self, value: f64, width: f64) -> f64 {
-        let share = (value - self.low) / (self.high - self.low);
-        let share = if share > 0.0 { share } else { 0.0 };
-        if share < 1.0 { share * width } else { width }
+        let (least, most) = self.whole;
+        let value = if value > least { value } else { least };
+        let value = if value < most { value } else { most };
+        (value - self.low) / (self.high - self.low) * width
+    }
+
+    /// The value that stands at a place on a stretch of `width`.
+    #[must_use]
+    pub fn value(&self, place: f64, width: f64) -> f64 {
+        self.low + place / width * (self.high - self.low)
     }
 }
 
@@ -115,10 +138,20 @@ mod tests {
 
     #[test]
     fn what_is_beyond_stands_at_the_end() {
-        let axis = Axis { low: 0.0, high: 10.0, step: 5.0 };
+        let axis = Axis { low: 0.0, high: 10.0, step: 5.0, whole: (0.0, 10.0) };
         assert_eq!(axis.place(-3.0, 200.0), 0.0);
         assert_eq!(axis.place(5.0, 200.0), 100.0);
         assert_eq!(axis.place(30.0, 200.0), 200.0);
+    }
+
+    #[test]
+    fn a_part_is_shown_as_it_stands() {
+        let part = Axis::fit(0.0, 100.0, 5).part((20.0, 30.0), 5);
+        assert_eq!(part.ticks(), vec![20.0, 22.0, 24.0, 26.0, 28.0, 30.0]);
+        assert_eq!((part.place(25.0, 200.0), part.value(100.0, 200.0)), (100.0, 25.0));
+        assert_eq!(part.place(15.0, 200.0), -100.0, "to the left of what is in view");
+        assert_eq!(part.place(900.0, 200.0), 1600.0, "at the end of the whole, out of view");
+        assert_eq!(part.part((5.0, 5.0), 5), part);
     }
 
     proptest! {

@@ -131,6 +131,13 @@ impl Layout {
         }
     }
 
+    /// The slot of a node: all that grows from it stands in it.
+    #[must_use]
+    pub fn slot(&self, node: usize) -> (f32, f32) {
+        let at = |bounds: &[f32], other: f32| bounds.get(node).copied().unwrap_or(other);
+        (at(&self.low, 0.0), at(&self.high, 1.0))
+    }
+
     /// The height of a node in [0, 1], 0 at the top.
     #[must_use]
     pub fn height(&self, node: usize) -> f32 {

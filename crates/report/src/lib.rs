@@ -7,7 +7,6 @@
 //! | [`axis`] | round ticks and the shared scale |
 //! | [`explain`] | why a rival has no plan or no bound, in sentences |
 //! | [`layout`] | places of tree nodes, stable while the tree grows |
-//! | [`density`] | a large tree as counts by cell |
 //! | [`map`] | places fitted to a frame, arcs, hulls |
 //! | [`opinion`] | our root beside what a second LP code says |
 //! | [`proof`] | what exact arithmetic proved of a bound, in words |
@@ -22,7 +21,6 @@ pub mod audit;
 pub mod axis;
 pub mod csv;
 pub mod decision;
-pub mod density;
 pub mod explain;
 pub mod labels;
 pub mod layout;

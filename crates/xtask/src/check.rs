@@ -51,6 +51,7 @@ fn page(place: &Workplace) -> Result<(), Fault> {
 fn browser(place: &Workplace) -> Result<(), Fault> {
     step("browser tests", || {
         packages::ensure(&["chromium", "chromium-driver"], "for the browser tests")?;
+        packages::fetch(place.root(), "axe-core", "4.14.1")?;
         if !place.dist().join("index.html").is_file() {
             return Err(Fault::new("the page is not built: run `cargo xtask page --no-serve`"));
         }

@@ -1,5 +1,6 @@
 //! Debian packages that a step needs.
 
+use std::path::Path;
 use std::process::Command;
 
 use crate::fault::Fault;
@@ -24,6 +25,22 @@ pub(crate) fn ensure(packages: &[&str], purpose: &str) -> Result<(), Fault> {
     let mut shell = Command::new("sh");
     shell.args(["-c", &line]).env("DEBIAN_FRONTEND", "noninteractive");
     run(&mut shell)
+}
+
+/// Fetches a package of npm into `target/npm`, unless it is there. Where there is no npm, tests that
+/// need the package say so.
+pub(crate) fn fetch(root: &Path, name: &str, version: &str) -> Result<(), Fault> {
+    let folder = root.join("target/npm");
+    if folder.join("node_modules").join(name).is_dir() {
+        return Ok(());
+    }
+    if !crate::process::on_path("npm") {
+        println!("   LEFT OUT: checks by {name}, since there is no npm to fetch it");
+        return Ok(());
+    }
+    let mut npm = Command::new("npm");
+    npm.args(["install", "--no-audit", "--no-fund", "--ignore-scripts", "--prefix"]);
+    run(npm.arg(folder).arg(format!("{name}@{version}")))
 }
 
 /// The line that installs packages.

@@ -77,6 +77,19 @@ impl Browser {
         Ok(self.client.issue_cmd(Post::protocol(method, &parameters)).await?)
     }
 
+    /// Seconds that scripts of the page have taken so far, as the browser's own clock of tasks says.
+    ///
+    /// # Errors
+    /// Those of the driver.
+    pub async fn script_seconds(&self) -> Outcome<f64> {
+        self.protocol("Performance.enable", json!({})).await?;
+        let metrics = self.protocol("Performance.getMetrics", json!({})).await?;
+        let all = metrics["metrics"].as_array().map(Vec::as_slice).unwrap_or_default();
+        let script = all.iter().find(|metric| metric["name"] == "ScriptDuration");
+        let seconds = script.and_then(|metric| metric["value"].as_f64());
+        seconds.ok_or_else(|| fault("the browser measures no scripts"))
+    }
+
     pub(crate) async fn picture(&self) -> Outcome<Vec<u8>> {
         Ok(self.client.screenshot().await?)
     }

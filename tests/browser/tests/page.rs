@@ -68,3 +68,9 @@ mod hostile;
 
 #[path = "page/helping.rs"]
 mod helping;
+
+#[path = "page/trees.rs"]
+mod trees;
+
+#[path = "page/accessible.rs"]
+mod accessible;

@@ -55,7 +55,7 @@ pub(crate) fn TakeAway(props: &TakeProps) -> Html {
     };
     html! {
         <details class="take" data-testid="take">
-            <summary aria-label={format!("Take {} away", props.letter)}>{ "Take away" }</summary>
+            <summary aria-label={format!("Take away {}", props.letter)}>{ "Take away" }</summary>
             <div class="acts">
                 for (form, name, ending) in FORMS {
                     if form == Form::Mps || !own {

@@ -2,7 +2,7 @@
 //! and what it violates.
 
 use record::event::{Branching, NodeState};
-use record::message::{NodeDetail, RivalReport, ViolatedSubset};
+use record::message::{InstanceReport, NodeDetail, RivalReport, ViolatedSubset};
 use record::results::Proof;
 use record::scenario::{Act, ActKind};
 use report::number::{fixed, full, of, short};
@@ -12,7 +12,7 @@ use web_sys::HtmlElement;
 use yew::prelude::*;
 
 use crate::state::board::{Board, Selection};
-use crate::state::document::{Accepted, Document};
+use crate::state::document::Document;
 use crate::state::pointer::Shared;
 use crate::state::steer::column_words;
 use crate::state::words::{branching, node_state};
@@ -78,8 +78,8 @@ pub(crate) fn Inspector(props: &InspectorProps) -> Html {
             data-testid="inspector"
         >
             <h2 id={HEADING} tabindex="-1">{ heading(at, place) }</h2>
-            if let (Some(detail), Some(accepted)) = (props.board.detail.clone().filter(|_| is_known), props.document.accepted.clone()) {
-                <Detail {detail} {accepted} rival={lane.rival.clone()} {drawn} {act} {chosen} />
+            if let Some(detail) = props.board.detail.clone().filter(|_| is_known) {
+                <Detail {detail} report={report(&props.document)} rival={lane.rival.clone()} {drawn} {act} {chosen} />
             } else if let Some(node) = node.filter(|node| !node.solved && node.state != NodeState::Open) {
                 { unsolved(&node, lane.rival.as_deref()) }
             } else {
@@ -87,6 +87,11 @@ pub(crate) fn Inspector(props: &InspectorProps) -> Html {
             }
         </section>
     }
+}
+
+/// What is known of the instance; nothing where every rival brings its data along.
+fn report(document: &Document) -> Shared<InstanceReport> {
+    document.accepted.as_ref().map_or_else(Shared::default, |accepted| accepted.report.clone())
 }
 
 /// The column on which a person wants a node branched.
@@ -133,7 +138,7 @@ fn heading(at: Selection, place: usize) -> String {
 #[derive(Properties, PartialEq)]
 struct DetailProps {
     detail: Shared<NodeDetail>,
-    accepted: Accepted,
+    report: Shared<InstanceReport>,
     rival: Option<Shared<RivalReport>>,
     drawn: UseStateHandle<String>,
     /// Does an act by hand; `None` once the search has ended.
@@ -149,7 +154,7 @@ fn Detail(props: &DetailProps) -> Html {
         let column = column.setter();
         Callback::from(move |chosen: Option<u32>| column.set(chosen))
     };
-    let (detail, report) = (&props.detail, &props.accepted.report);
+    let (detail, report) = (&props.detail, &props.report);
     let tint = set.and_then(|index| detail.violated.get(index)).map(|violated| {
         let named = |label: &String| report.stops.iter().position(|stop| stop.label == *label);
         Shared::new(violated.subset.iter().filter_map(named).collect::<Vec<usize>>())

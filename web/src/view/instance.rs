@@ -48,21 +48,33 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
             <div class={classes!("instance-parts", (!is_drawn(document)).then_some("plain"))}>
                 if is_drawn(document) { <Drawing document={document.clone()} /> }
                 <div>
-                    { facts(document, shown.as_ref()) }
-                    if let Some(report) = &document.reading {
-                        <Complaints text={document.draft.clone()} report={report.clone()} />
+                    if needs_none(document) {
+                        <p class="soft" data-testid="report">{ "No instance: the models in MPS below bring their data along." }</p>
+                    } else {
+                        { facts(document, shown.as_ref()) }
+                        if let Some(report) = &document.reading {
+                            <Complaints text={document.draft.clone()} report={report.clone()} />
+                        }
                     }
                     <Bindings document={document.clone()} />
-                    <Paste draft={document.draft.clone()} broken={is_broken(document)} />
+                    <Paste draft={document.draft.clone()} broken={is_broken(document) && !needs_none(document)} />
                 </div>
             </div>
         </section>
     }
 }
 
+/// Whether nothing was pasted and no rival waits for it.
+fn needs_none(document: &Document) -> bool {
+    let mut slots = document.slots.iter();
+    let all_mps = !document.slots.is_empty() && slots.all(|slot| slot.rival.mps.is_some());
+    all_mps && document.accepted.is_none() && document.draft.text.trim().is_empty()
+}
+
 /// Whether there are stops to draw, or the instance is still being read and may have some.
 fn is_drawn(document: &Document) -> bool {
-    document.accepted.as_ref().is_none_or(|accepted| !accepted.report.stops.is_empty())
+    let drawn = document.accepted.as_ref().is_none_or(|accepted| !accepted.report.stops.is_empty());
+    drawn && !needs_none(document)
 }
 
 fn is_broken(document: &Document) -> bool {

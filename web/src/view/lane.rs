@@ -8,7 +8,6 @@ use record::scenario::{InstanceText, Rival, Run};
 use report::axis::Axis;
 use report::explain::grown;
 use report::number::{count, of};
-use report::proof;
 use yew::prelude::*;
 
 use crate::state::board::{BoardAction, Selection};
@@ -19,23 +18,17 @@ use crate::state::pointer::Shared;
 use crate::state::steer::{Steer, is_stopped};
 use crate::state::words::{advice, sentence, status};
 use crate::view::acts::Acts;
-use crate::view::canvas::TreeCanvas;
+use crate::view::drawing::Drawing;
 use crate::view::editor::{Editor, toggle};
 use crate::view::families::Families;
-use crate::view::figure::{figure, gap, share};
+use crate::view::figures::Figures;
 use crate::view::handover::TakeAway;
 use crate::view::hands::{Hands, use_hands};
 use crate::view::inspector::focus_inspector;
 use crate::view::lane_name::LaneName;
-use crate::view::paint::Scene;
 use crate::view::reason::reason;
-use crate::view::ruler::Ruler;
 use crate::view::second::second;
 use crate::view::statistics::statistics;
-use crate::view::twin::Twin;
-
-/// Height of a tree in pixels.
-const HEIGHT: f64 = 136.0;
 
 #[derive(Properties, PartialEq)]
 pub(crate) struct LaneProps {
@@ -81,7 +74,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 if props.relaxation {
                     <p class="small soft">{ "A relaxation: bounded, not compared for its optimum." }</p>
                 }
-                { figures(props) }
+                <Figures lane={props.lane.clone()} tree={hands.as_ref().and_then(|hands| hands.session.tree(props.slot.id))} best={props.best} />
                 { second(&props.lane) }
                 <Acts slot={props.slot.clone()} letter={props.letter.clone()} rival={props.lane.rival.clone()} />
                 <p class="small" data-testid="status">{ status(&props.lane) }</p>
@@ -133,8 +126,9 @@ fn use_loading(props: &LaneProps, hands: Option<Hands>) {
     {
         let session = session.clone();
         use_effect_with((props.text.clone(), rival, run), move |(text, rival, run)| {
-            if let (Some(session), Some(text)) = (session, text) {
-                session.load(id, job(Some((**text).clone()), rival, run, seed));
+            // A model in MPS brings its data along.
+            if let Some(session) = session.filter(|_| text.is_some() || rival.mps.is_some()) {
+                session.load(id, job(text.as_deref().cloned(), rival, run, seed));
             }
         });
     }
@@ -158,34 +152,6 @@ fn size(rival: &RivalReport) -> String {
         of(u64::from(rival.rows), "row"),
         of(u64::from(rival.columns), "column")
     )
-}
-
-fn figures(props: &LaneProps) -> Html {
-    let lane = &props.lane;
-    let Some(root) = &lane.root else { return Html::default() };
-    let mark = proof::mark(root.proof, root.checked_within);
-    let meaning = proof::meaning(root.proof, root.checked_bound.as_deref());
-    html! {
-        <dl class="figures">
-            <div>
-                <dt>{ "root bound" }</dt>
-                <dd><span data-testid="root-bound">{ figure(root.bound) }</span>
-                <small class="soft" data-testid="checked" title={meaning}>{ mark }</small></dd>
-            </div>
-            <div>
-                <dt>{ "root gap" }</dt>
-                <dd data-testid="root-gap">{ share(gap(props.best, root.bound)) }</dd>
-            </div>
-            <div>
-                <dt>{ "bound now" }</dt>
-                <dd data-testid="bound">{ figure(lane.bound()) }</dd>
-            </div>
-            <div>
-                <dt>{ "nodes" }</dt>
-                <dd data-testid="nodes">{ count(u64::from(lane.nodes())) }</dd>
-            </div>
-        </dl>
-    }
 }
 
 fn failure(error: &ErrorReport) -> Html {
@@ -267,31 +233,11 @@ fn drawing(props: &LaneProps, hands: &Hands) -> Html {
     let select = Callback::from(move |node: NodeNumber| {
         board.dispatch(BoardAction::Select(Selection { lane: id, node }));
     });
-    let lane = &props.lane;
-    let selected = props.selected.and_then(|node| tree.borrow().place(node));
-    let scene = Scene {
-        axis,
-        width: props.width,
-        height: HEIGHT,
-        best: props.best,
-        root: lane.root_bound(),
-        now: lane.bound(),
-        selected,
-    };
     html! {
-        <>
-            if let Some(root) = lane.root_bound() {
-                <Ruler {axis} width={props.width} {root} now={lane.bound()} best={props.best} />
-            }
-            <TreeCanvas
-                tree={tree.clone()} version={lane.tally.version} {scene} label={label(props)}
-                select={select.clone()} open={Callback::from(|()| focus_inspector())}
-            />
-            <Twin
-                {tree} version={lane.tally.version} made={lane.tally.made} letter={props.letter.clone()}
-                rival={lane.rival.clone()} {selected} {select}
-            />
-        </>
+        <Drawing
+            letter={props.letter.clone()} lane={props.lane.clone()} {tree} {axis} width={props.width}
+            best={props.best} selected={props.selected} {select}
+        />
     }
 }
 
@@ -313,13 +259,4 @@ fn to_the_root(lane: LaneId, hands: &Hands, words: &'static str) -> Html {
         focus_inspector();
     });
     html! { <button type="button" class="link" data-testid="show-root" {onclick}>{ words }</button> }
-}
-
-fn label(props: &LaneProps) -> String {
-    let nodes = of(u64::from(props.lane.tally.made), "node");
-    let at = props.selected.map_or_else(String::new, |node| format!("; node {} selected", node.0));
-    format!(
-        "Search tree of {}: {nodes}{at}. Arrow keys move among nodes, Enter opens.",
-        props.letter
-    )
 }

@@ -1,74 +1,27 @@
 //! Drawing a tree on a canvas: x is a node's bound, y its place in the layout.
 //!
 //! Marks differ by shape as well as by colour and are drawn in one path a shape. A mark that
-//! would fall on the same few pixels as one of its kind is left out, and past [`DENSE`] nodes the
-//! tree is drawn as counts by cell, so that the cost is bounded by pixels.
+//! would fall on the same few pixels as one of its kind is left out.
 
 use record::event::NodeState;
-use report::axis::Axis;
-use report::density::Density;
+use report::number::{count, of, short};
 use wasm_bindgen::{JsCast, JsValue};
 use web_sys::{CanvasRenderingContext2d, HtmlCanvasElement};
 
 use crate::state::tree::Tree;
 use crate::view::axis::across;
+use crate::view::scene::{Kind, Scene, Spot};
 
-/// Nodes up to which edges are curves, all edges are drawn, edges of inner nodes are drawn, and
-/// marks are drawn.
+/// Spots up to which edges are curves, and marks have their full size.
 const CURVED: usize = 600;
-const LEAFED: usize = 1_200;
-const EDGED: usize = 5_000;
-const DENSE: usize = 6_000;
+const USUAL: usize = 1_200;
 /// Edges drawn in one stroke: a longer path costs more than its parts.
 const STROKE: usize = 64;
-/// Shades of a dense drawing.
-const LEVELS: u32 = 4;
-/// Side of a cell of a dense drawing, in pixels.
-const CELL: f64 = 3.0;
-/// Room above and below the tree, in pixels.
-const ROOM: f64 = 9.0;
-
-/// What is drawn beside the tree itself.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub(crate) struct Scene {
-    /// The shared axis.
-    pub(crate) axis: Axis,
-    /// Width in pixels.
-    pub(crate) width: f64,
-    /// Height in pixels.
-    pub(crate) height: f64,
-    /// The best known value.
-    pub(crate) best: Option<f64>,
-    /// The root's bound.
-    pub(crate) root: Option<f64>,
-    /// The bound of the whole tree.
-    pub(crate) now: Option<f64>,
-    /// The selected node.
-    pub(crate) selected: Option<usize>,
-}
-
-impl Scene {
-    /// Where a node stands.
-    fn at(&self, tree: &Tree, place: usize) -> Option<(f64, f64)> {
-        let stand = tree.nodes().get(place)?.stand?;
-        let y = ROOM + tree.height(place) * (self.height - 2.0 * ROOM);
-        Some((across(&self.axis, self.width, stand), y))
-    }
-
-    /// The node nearest to a point, if one is within reach. O(nodes).
-    pub(crate) fn nearest(&self, tree: &Tree, x: f64, y: f64, reach: f64) -> Option<usize> {
-        let distance = |place: usize| {
-            let (node_x, node_y) = self.at(tree, place)?;
-            let (dx, dy) = (node_x - x, node_y - y);
-            Some((dx * dx + dy * dy, place))
-        };
-        (0..tree.nodes().len())
-            .filter_map(distance)
-            .filter(|(square, _)| *square <= reach * reach)
-            .min_by(|a, b| a.0.total_cmp(&b.0))
-            .map(|(_, place)| place)
-    }
-}
+/// A silhouette that is thinner is a line, without words.
+const WORDED: f64 = 10.0;
+/// Shades of a silhouette, and the nodes to a pixel from which it is a shade darker.
+const SHADES: u32 = 4;
+const DENSITIES: [f64; 3] = [0.1, 0.4, 2.0];
 
 /// The value of a custom property of the style at an element.
 pub(crate) fn colour(canvas: &HtmlCanvasElement, name: &str) -> String {
@@ -77,8 +30,8 @@ pub(crate) fn colour(canvas: &HtmlCanvasElement, name: &str) -> String {
     value.map_or_else(String::new, |value| value.trim().to_owned())
 }
 
-/// Draws a tree.
-pub(crate) fn paint(canvas: &HtmlCanvasElement, tree: &Tree, scene: &Scene) {
+/// Draws a tree and returns how many of its nodes it took.
+pub(crate) fn paint(canvas: &HtmlCanvasElement, tree: &Tree, scene: &Scene) -> usize {
     let ratio = gloo_utils::window().device_pixel_ratio();
     let (width, height) = ((scene.width * ratio) as u32, (scene.height * ratio) as u32);
     if (canvas.width(), canvas.height()) != (width, height) {
@@ -87,7 +40,7 @@ pub(crate) fn paint(canvas: &HtmlCanvasElement, tree: &Tree, scene: &Scene) {
     }
     let context = canvas.get_context("2d").ok().flatten();
     let Some(context) = context.and_then(|c| c.dyn_into::<CanvasRenderingContext2d>().ok()) else {
-        return;
+        return 0;
     };
     // A drawing whose state cannot be set is drawn with the state there is.
     let _ = context.set_transform(ratio, 0.0, 0.0, ratio, 0.0, 0.0);
@@ -97,11 +50,12 @@ pub(crate) fn paint(canvas: &HtmlCanvasElement, tree: &Tree, scene: &Scene) {
         ink: colour(canvas, "--ink"),
         soft: colour(canvas, "--soft"),
         paper: colour(canvas, "--paper"),
+        face: colour(canvas, "font-family"),
         context,
         tree,
         scene,
     };
-    pen.draw();
+    pen.draw(&scene.spots(tree))
 }
 
 struct Pen<'a> {
@@ -112,22 +66,18 @@ struct Pen<'a> {
     ink: String,
     soft: String,
     paper: String,
+    face: String,
 }
 
 impl Pen<'_> {
-    fn draw(&self) {
+    fn draw(&self, spots: &[Spot]) -> usize {
         self.rungs();
-        let count = self.tree.nodes().len();
-        if count > DENSE {
-            self.density();
-        } else {
-            if count <= EDGED {
-                self.edges(count);
-            }
-            self.marks();
-        }
+        self.edges(spots);
+        self.silhouettes(spots);
+        self.marks(spots);
         self.best();
         self.selection();
+        spots.len()
     }
 
     /// Dotted lines at the root's bound and at the bound now.
@@ -165,16 +115,15 @@ impl Pen<'_> {
         let _ = self.context.set_line_dash(&lengths);
     }
 
-    fn edges(&self, count: usize) {
+    fn edges(&self, spots: &[Spot]) {
+        let curved = spots.len() <= CURVED;
         self.context.set_stroke_style_str(&self.soft);
         self.context.set_line_width(0.7);
-        self.context.set_global_alpha(if count <= CURVED { 0.55 } else { 0.35 });
-        let shown = |&place: &usize| count <= LEAFED || self.tree.first_child(place).is_some();
-        let places: Vec<usize> = (1..count).filter(shown).collect();
-        for stroke in places.chunks(STROKE) {
+        self.context.set_global_alpha(if curved { 0.55 } else { 0.35 });
+        for stroke in spots.chunks(STROKE) {
             self.context.begin_path();
-            for &place in stroke {
-                self.edge(place, count <= CURVED);
+            for spot in stroke {
+                self.edge(spot.place, curved);
             }
             self.context.stroke();
         }
@@ -193,18 +142,81 @@ impl Pen<'_> {
         }
     }
 
-    fn marks(&self) {
+    /// What grows from a node as one shape: as far as it reaches, darker the more nodes it holds,
+    /// and with its count and weakest open bound where there is room for words.
+    fn silhouettes(&self, spots: &[Spot]) {
+        self.context.set_fill_style_str(&self.hue);
+        for shade in 1..=SHADES {
+            self.context
+                .set_global_alpha(0.15 + 0.6 * f64::from(shade - 1) / f64::from(SHADES - 1));
+            self.context.begin_path();
+            for spot in spots.iter().filter(|spot| self.shade(spot) == shade) {
+                self.silhouette(spot);
+            }
+            self.context.fill();
+        }
+        self.context.set_global_alpha(1.0);
+        let worded = |kind| matches!(kind, Kind::Silhouette { height, .. } if height >= WORDED);
+        for spot in spots.iter().filter(|spot| worded(spot.kind)) {
+            self.count(spot);
+        }
+    }
+
+    /// How dark a silhouette is, from 1, by its nodes to a pixel; 0 for what is none.
+    fn shade(&self, spot: &Spot) -> u32 {
+        let Kind::Silhouette { from, to, height } = spot.kind else { return 0 };
+        if height >= WORDED {
+            return 2;
+        }
+        let size = self.tree.nodes().get(spot.place).map_or(0, |node| node.size);
+        let dense = f64::from(size) / (to - from + 1.0);
+        1 + DENSITIES.iter().filter(|&&least| dense >= least).count() as u32
+    }
+
+    fn silhouette(&self, spot: &Spot) {
+        let Kind::Silhouette { from, to, height } = spot.kind else { return };
+        let (x, y) = spot.at;
+        if height < WORDED {
+            let height = if height > 1.0 { height } else { 1.0 };
+            self.context.rect(from, y - height / 2.0, to - from + 1.0, height);
+            return;
+        }
+        let half = height / 2.0 - 1.0;
+        for end in [from, to] {
+            self.line((x, y), (end, y - half));
+            self.context.line_to(end, y + half);
+            self.context.line_to(x, y);
+        }
+    }
+
+    fn count(&self, spot: &Spot) {
+        let (size, open, bound) = self.tree.under(spot.place, self.scene.maximise);
+        let nodes = of(u64::from(size), "node");
+        let words = match bound {
+            Some(bound) => {
+                format!("{nodes}, {} open, from {}", count(u64::from(open)), short(bound))
+            }
+            None => format!("{nodes}, closed"),
+        };
+        self.context.set_font(&format!("11px {}", self.face));
+        self.context.set_fill_style_str(&self.ink);
+        let width = self.context.measure_text(&words).map_or(0.0, |size| size.width());
+        let right = spot.at.0 + 8.0;
+        let x = if right + width > self.scene.width { spot.at.0 - 8.0 - width } else { right };
+        // Words that cannot be written leave the shape, which says as much.
+        let _ = self.context.fill_text(&words, x, spot.at.1 + 4.0);
+    }
+
+    fn marks(&self, spots: &[Spot]) {
         let mut shown = Shown::new(self.scene);
+        let usual = if spots.len() > USUAL { 0.75 } else { 1.0 };
         for shape in Shape::ALL {
             self.context.begin_path();
-            let usual = if self.tree.nodes().len() > LEAFED { 0.75 } else { 1.0 };
-            for (place, node) in self.tree.nodes().iter().enumerate() {
-                if Shape::of(node.state) != shape {
-                    continue;
-                }
-                let Some((x, y)) = self.scene.at(self.tree, place) else { continue };
-                if shown.first(shape, x, y) {
-                    self.mark(shape, x, y, if place == 0 { 2.0 } else { usual });
+            for spot in spots.iter().filter(|spot| spot.kind != Kind::Edge) {
+                let state = self.tree.nodes().get(spot.place).map(|node| node.state);
+                let (x, y) = spot.at;
+                if state.map(Shape::of) == Some(shape) && shown.first(shape, x, y) {
+                    self.mark(shape, x, y, if spot.place == 0 { 2.0 } else { usual });
                 }
             }
             self.ink(shape);
@@ -270,28 +282,6 @@ impl Pen<'_> {
         self.context.stroke();
     }
 
-    fn density(&self) {
-        let (width, height) = (self.scene.width, self.scene.height);
-        let place = |index: usize| self.scene.at(self.tree, index);
-        let points =
-            (0..self.tree.nodes().len()).filter_map(place).map(|(x, y)| (x / width, y / height));
-        let density = Density::of(points, (width / CELL) as usize, (height / CELL) as usize);
-        let (step_x, step_y) = (width / density.columns as f64, height / density.rows as f64);
-        self.context.set_fill_style_str(&self.hue);
-        for level in 1..=LEVELS {
-            self.context.set_global_alpha(0.25 + 0.75 * f64::from(level) / f64::from(LEVELS));
-            self.context.begin_path();
-            for cell in
-                (0..density.counts.len()).filter(|&cell| density.level(cell, LEVELS) == level)
-            {
-                let (column, row) = (cell % density.columns, cell / density.columns);
-                self.context.rect(column as f64 * step_x, row as f64 * step_y, step_x, step_y);
-            }
-            self.context.fill();
-        }
-        self.context.set_global_alpha(1.0);
-    }
-
     /// The selected node, ringed, with its path to the root.
     fn selection(&self) {
         let Some(place) = self.scene.selected else { return };
@@ -352,6 +342,10 @@ impl Shown {
 
     /// Whether a shape is the first of its kind there.
     fn first(&mut self, shape: Shape, x: f64, y: f64) -> bool {
+        let within = (0.0..=2.0 * self.columns as f64 - 2.0).contains(&x) && y >= 0.0;
+        if !within {
+            return false;
+        }
         let bit = 1_u8 << shape as u8;
         let cell = (y / 2.0) as usize * self.columns + (x / 2.0) as usize;
         let Some(bits) = self.bits.get_mut(cell) else { return false };
@@ -364,29 +358,7 @@ impl Shown {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::state::tree::tests::small;
-
-    fn scene() -> Scene {
-        Scene {
-            axis: Axis { low: 0.0, high: 20.0, step: 5.0 },
-            width: 228.0,
-            height: 118.0,
-            best: None,
-            root: None,
-            now: None,
-            selected: None,
-        }
-    }
-
-    #[test]
-    fn a_point_finds_the_nearest_node_within_reach() {
-        let mut tree = small();
-        tree.settle();
-        assert_eq!(scene().at(&tree, 0), Some((114.0, 59.0)));
-        assert_eq!(scene().nearest(&tree, 115.0, 60.0, 12.0), Some(0));
-        assert_eq!(scene().nearest(&tree, 114.0, 30.0, 12.0), Some(1));
-        assert_eq!(scene().nearest(&tree, 10.0, 10.0, 12.0), None);
-    }
+    use crate::view::scene::tests::scene;
 
     #[test]
     fn a_second_mark_on_the_same_pixels_is_left_out() {
@@ -394,6 +366,6 @@ mod tests {
         assert!(shown.first(Shape::Disc, 10.0, 10.0));
         assert!(!shown.first(Shape::Disc, 10.9, 10.9));
         assert!(shown.first(Shape::Ring, 10.0, 10.0));
-        assert!(!shown.first(Shape::Ring, 1e6, 10.0));
+        assert!(!shown.first(Shape::Ring, 1e6, 10.0) && !shown.first(Shape::Ring, -3.0, 10.0));
     }
 }

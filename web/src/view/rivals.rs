@@ -12,10 +12,12 @@ use crate::state::board::Board;
 use crate::state::document::{Document, DocumentAction};
 use crate::state::editor::{Draft, Edit};
 use crate::state::lane::Phase;
+use crate::state::lens::Lens;
 use crate::state::pointer::Shared;
-use crate::view::axis::{AxisView, Best};
+use crate::view::axis::{AxisView, Best, TICK};
 use crate::view::hands::{Hands, use_hands};
 use crate::view::lane::LaneView;
+use crate::view::replay::Replay;
 use crate::view::rule::{plan, rules};
 use crate::view::shelf::Shelf;
 
@@ -27,9 +29,6 @@ pub(crate) const HEADING: &str = "rivals-heading";
 
 /// The id of what holds the catalogue.
 const SHELF: &str = "shelf";
-
-/// Pixels of axis a labelled tick wants.
-const TICK: f64 = 110.0;
 
 #[derive(Properties, PartialEq)]
 pub(crate) struct RivalsProps {
@@ -43,16 +42,19 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
     let hands = use_hands();
     let node = use_node_ref();
     let width = use_width(&node);
+    let lens = use_reducer(Lens::default);
     let (document, board) = (&props.document, &props.board);
     let best = best(document, board);
     let domain = board.domain(best.as_ref().map(|best| best.value));
     let axis = domain.map(|(low, high)| Axis::fit(low, high, (width / TICK) as u32));
     html! {
+        <ContextProvider<UseReducerHandle<Lens>> context={lens}>
         <section class="rivals" aria-labelledby={HEADING}>
             <div class="heading">
                 <h2 id={HEADING} tabindex="-1">{ heading(document) }</h2>
                 if let Some(hands) = &hands { { for_all(document, board, hands) } }
             </div>
+            <Replay most={most(board)} />
             <div class="axis-row">
                 <div ref={node} class="axis-place">
                     if let Some(axis) = axis { if width > 0.0 { <AxisView {axis} {width} best={best.clone()} /> } }
@@ -77,7 +79,17 @@ pub(crate) fn Rivals(props: &RivalsProps) -> Html {
                 <AddRival catalogue={document.catalogue.clone()} family={family(document)} />
             }
         </section>
+        </ContextProvider<UseReducerHandle<Lens>>>
     }
+}
+
+/// Nodes and work of the longest search: iterations weighted by coefficients.
+fn most(board: &Board) -> (u64, u64) {
+    board.lanes.values().fold((0, 0), |(nodes, work), lane| {
+        let coefficients = lane.rival.as_ref().map_or(1, |rival| rival.nonzeros);
+        let spent = lane.tally.iterations.saturating_mul(coefficients);
+        (nodes.max(u64::from(lane.tally.solved)), work.max(spent))
+    })
 }
 
 /// The family of the first rival that is shipped.

@@ -7,15 +7,17 @@ use record::event::NodeNumber;
 use record::message::RivalReport;
 use report::number::{of, short};
 use wasm_bindgen::JsCast;
-use web_sys::HtmlElement;
+use web_sys::{HtmlElement, HtmlInputElement};
 use yew::prelude::*;
 
 use crate::browser::run::TreeCell;
+use crate::state::find::{Wanted, next};
 use crate::state::outline::{Row, rows};
 use crate::state::pointer::Shared;
 use crate::state::tree::Tree;
 use crate::state::words::{branching, node_state};
 use crate::view::inspector::focus_inspector;
+use crate::view::scene::Folded;
 
 /// Height of a row, as the style sheet has it, and rows in view.
 const ROW: i32 = 28;
@@ -34,12 +36,16 @@ pub(crate) struct TwinProps {
     pub(crate) rival: Option<Shared<RivalReport>>,
     pub(crate) selected: Option<usize>,
     pub(crate) select: Callback<NodeNumber>,
+    /// Places of nodes whose subtrees are folded, here and in the drawing.
+    pub(crate) folded: Folded,
+    pub(crate) fold: Callback<usize>,
 }
 
 /// The twin, folded away until it is opened.
 #[component]
 pub(crate) fn Twin(props: &TwinProps) -> Html {
     let open = use_state_eq(|| false);
+    let wanted = use_state_eq(String::new);
     let ontoggle = {
         let open = open.setter();
         Callback::from(move |event: Event| {
@@ -51,7 +57,7 @@ pub(crate) fn Twin(props: &TwinProps) -> Html {
     html! {
         <details class="folded twin small" data-testid="twin" {ontoggle}>
             <summary>{ format!("{nodes} as a list") }</summary>
-            if *open { <List ..props.copy() /> }
+            if *open { { find(props, &wanted) } <List ..props.copy() /> }
         </details>
     }
 }
@@ -66,7 +72,55 @@ impl TwinProps {
             rival: self.rival.clone(),
             selected: self.selected,
             select: self.select.clone(),
+            folded: self.folded.clone(),
+            fold: self.fold.clone(),
         }
+    }
+}
+
+/// A field that finds nodes; each press of Enter or of the button leads to the next one.
+fn find(props: &TwinProps, wanted: &UseStateHandle<String>) -> Html {
+    let columns = props.rival.as_ref().map_or(&[][..], |rival| rival.column_names.as_slice());
+    let places = Wanted::read(wanted).map(|wanted| wanted.places(&props.tree.borrow(), columns));
+    let words = places.as_ref().map_or_else(String::new, |places| match places.len() {
+        0 => "no node matches".to_owned(),
+        1 => "1 node matches".to_owned(),
+        some => format!("{} match", of(some as u64, "node")),
+    });
+    let step = {
+        let (select, selected) = (props.select.clone(), props.selected);
+        Callback::from(move |()| {
+            if let Some(place) = places.as_ref().and_then(|places| next(places, selected)) {
+                select.emit(Tree::number(place));
+            }
+        })
+    };
+    let oninput = {
+        let wanted = wanted.setter();
+        Callback::from(move |event: InputEvent| {
+            wanted.set(event.target_unchecked_into::<HtmlInputElement>().value());
+        })
+    };
+    let onkeydown = {
+        let step = step.clone();
+        Callback::from(move |event: KeyboardEvent| {
+            if event.key() == "Enter" {
+                step.emit(());
+            }
+        })
+    };
+    html! {
+        <div class="row find">
+            <label class="field">
+                { "Find" }
+                <input
+                    type="text" placeholder="17, depth 5, infeasible, x[" value={(**wanted).clone()}
+                    spellcheck="false" autocomplete="off" data-testid="find-node" {oninput} {onkeydown}
+                />
+            </label>
+            <button type="button" data-testid="find-next" onclick={step.reform(|_: MouseEvent| ())}>{ "Next" }</button>
+            <span class="soft" role="status" data-testid="found">{ words }</span>
+        </div>
     }
 }
 
@@ -83,9 +137,9 @@ enum Move {
 #[component]
 fn List(props: &TwinProps) -> Html {
     let frame = use_node_ref();
-    let folded = use_state(|| Shared::new(BTreeSet::<usize>::new()));
+    let folded = &props.folded;
     let top = use_state_eq(|| 0_usize);
-    let key = (props.tree.clone(), props.version, (*folded).clone());
+    let key = (props.tree.clone(), props.version, folded.clone());
     let rows = use_memo(key, |(tree, _, folded)| rows(&tree.borrow(), folded));
     let first = top.saturating_sub(SPARE).min(rows.len());
     let last = (*top + VIEW + SPARE).clamp(first, rows.len());
@@ -93,6 +147,14 @@ fn List(props: &TwinProps) -> Html {
         let frame = frame.clone();
         use_effect_with((first, rows.len() - last), move |&(before, after)| {
             stretch(&frame, before, after);
+        });
+    }
+    {
+        let (frame, rows) = (frame.clone(), rows.clone());
+        use_effect_with(props.selected, move |selected| {
+            if let Some(place) = selected {
+                reveal(&frame, &rows, *place);
+            }
         });
     }
     let onscroll = {
@@ -104,19 +166,14 @@ fn List(props: &TwinProps) -> Html {
     };
     let onkeydown = {
         let (tree, select, selected) = (props.tree.clone(), props.select.clone(), props.selected);
-        let (rows, shut, set) = (rows.clone(), (*folded).clone(), folded.setter());
-        let frame = frame.clone();
+        let (rows, shut, fold) = (rows.clone(), folded.clone(), props.fold.clone());
         Callback::from(move |event: KeyboardEvent| {
             let step = step(&rows, &tree.borrow(), &shut, selected, &event.key());
             let Some(step) = step else { return };
             event.prevent_default();
             match step {
-                Move::Select(place) => {
-                    reveal(&frame, &rows, place);
-                    select.emit(Tree::number(place));
-                }
-                Move::Fold(place) => set.set(changed(&shut, place, true)),
-                Move::Unfold(place) => set.set(changed(&shut, place, false)),
+                Move::Select(place) => select.emit(Tree::number(place)),
+                Move::Fold(place) | Move::Unfold(place) => fold.emit(place),
                 Move::Open => focus_inspector(),
                 Move::Stay => {}
             }
@@ -132,7 +189,7 @@ fn List(props: &TwinProps) -> Html {
             aria-activedescendant={active.map(|place| row_id(&props.letter, place))}
         >
             <div class="before" role="none" />
-            for row in rows[first..last].iter() { { item(props, &tree, &folded, *row) } }
+            for row in rows[first..last].iter() { { item(props, &tree, folded, *row) } }
             <div class="after" role="none" />
         </div>
     }
@@ -168,16 +225,6 @@ fn item(props: &TwinProps, tree: &Tree, folded: &BTreeSet<usize>, row: Row) -> H
             <span class="value">{ bound }</span>
         </div>
     }
-}
-
-fn changed(folded: &BTreeSet<usize>, place: usize, fold: bool) -> Shared<BTreeSet<usize>> {
-    let mut folded = folded.clone();
-    if fold {
-        folded.insert(place);
-    } else {
-        folded.remove(&place);
-    }
-    Shared::new(folded)
 }
 
 /// What a key does; `None` for a key that is not for the list.

@@ -109,7 +109,7 @@ async fn verdict(browser: &Browser, words: &str) -> Outcome<()> {
 }
 
 /// Opens a scenario by a link in the address.
-async fn open_link(browser: &Browser, scenario: &Scenario) -> Outcome<()> {
+pub(crate) async fn open_link(browser: &Browser, scenario: &Scenario) -> Outcome<()> {
     let link = pack(&record::file::print(scenario))?;
     browser.script_with("location.hash = arguments[0]", vec![json!(link)]).await?;
     says(browser, "Opened from the link").await

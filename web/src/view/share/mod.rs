@@ -84,8 +84,8 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
         Callback::from(move |said: Notice| set.set(said))
     };
     html! {
-        <div class="share">
-            <div class="row" role="group" aria-label="The scenario">
+        <section class="share" aria-label="The scenario">
+            <div class="row">
                 <button
                     type="button" id={COPY} data-testid="copy-link" onclick={toggle(&panel)}
                     aria-expanded={if *panel { "true" } else { "false" }}
@@ -107,7 +107,7 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
                 />
             }
             <NoticeView notice={(*notice).clone()} {act} save={save_offered} hide={tell.reform(|()| Notice::default())} />
-        </div>
+        </section>
     }
 }
 

@@ -1,0 +1,98 @@
+//! WCAG 2.2 AA by axe-core, in every state of the page; what lacks axe-core says so.
+
+use std::fs;
+
+use hullward_tests_browser::Outcome;
+use hullward_tests_browser::browser::Browser;
+use hullward_tests_browser::screen::Screen;
+use hullward_tests_browser::visit::{Source, visit};
+
+use crate::lanes::{button, paste, status};
+
+/// The rules of WCAG 2.0 to 2.2, A and AA, and axe-core's own of good practice.
+const RUN: &str = "
+    const done = arguments[arguments.length - 1];
+    const tags = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'];
+    const words = (rule) => `${rule.id}: ${rule.help}: `
+      + rule.nodes.slice(0, 3).map((node) => node.html.slice(0, 200)).join(' | ');
+    axe.run(document, { runOnly: tags }).then(
+      (found) => done([found.violations.map(words), found.passes.length]),
+      (error) => done([[`${error}`], 0]));
+";
+
+/// The script of axe-core, which `cargo xtask test` fetches; `None` where it was not fetched, which
+/// in CI is an error.
+#[allow(clippy::print_stdout, reason = "a test that is left out says so")]
+fn axe() -> Outcome<Option<String>> {
+    let path =
+        concat!(env!("CARGO_MANIFEST_DIR"), "/../../target/npm/node_modules/axe-core/axe.min.js");
+    match fs::read_to_string(path) {
+        Ok(script) => Ok(Some(script)),
+        Err(error) if std::env::var_os("CI").is_some() => {
+            Err(format!("axe-core is not at {path}: {error}").into())
+        }
+        Err(_) => {
+            println!(
+                "LEFT OUT: axe-core is not installed; `cargo xtask test --only browser` fetches it by npm"
+            );
+            Ok(None)
+        }
+    }
+}
+
+/// Nothing is violated as the page stands, light and dark, and on a phone.
+async fn holds(browser: &Browser, axe: &str, state: &str) -> Outcome<()> {
+    for (width, dark) in [(1280, false), (1280, true), (390, false)] {
+        browser.look(Screen { width, dark }).await?;
+        browser.script(axe).await?;
+        let found = browser.script_async(RUN, Vec::new()).await?;
+        let violations = found[0].as_array().cloned().unwrap_or_default();
+        assert!(violations.is_empty(), "{state}, {width} pixels, dark {dark}: {violations:#?}");
+        assert!(found[1].as_u64().unwrap_or(0) > 20, "{state}: so few rules passed: {found}");
+    }
+    Ok(())
+}
+
+const UNFOLD: &str =
+    "document.querySelectorAll('details').forEach((each) => { each.open = true; })";
+
+#[tokio::test(flavor = "multi_thread")]
+async fn wcag_is_kept_from_the_empty_page_to_everything_open() -> Outcome<()> {
+    let Some(axe) = axe()? else { return Ok(()) };
+    visit(Source::File, async |browser| {
+        for letter in ["A", "B", "C"] {
+            status(browser, letter, "root solved").await?;
+        }
+        holds(browser, &axe, "as it opens").await?;
+        for letter in ["B", "C"] {
+            button(browser, letter, "run").await?.click().await?;
+            status(browser, letter, "closed").await?;
+        }
+        browser.select("[data-testid=moment]").await?.select_by_value("nodes").await?;
+        browser.still("[data-testid=browse]").await?.click().await?;
+        browser.find("button", "Write my own").await?.click().await?;
+        browser.still("[data-testid=kept]").await?.click().await?;
+        browser.still("[data-testid=copy-link]").await?.click().await?;
+        for _ in 0..2 {
+            browser.script(UNFOLD).await?;
+            browser.shows("Find").await?;
+        }
+        holds(browser, &axe, "everything open").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn wcag_is_kept_with_errors_and_with_an_infeasible_rival() -> Outcome<()> {
+    let Some(axe) = axe()? else { return Ok(()) };
+    visit(Source::File, async |browser| {
+        status(browser, "C", "root solved").await?;
+        paste(browser, "a b c\n1 2 x\n3 4 5 6\n").await?;
+        browser.shows("line 2").await?;
+        holds(browser, &axe, "a broken table").await?;
+        paste(browser, include_str!("../../fixtures/no-round.toml")).await?;
+        browser.shows("no plan").await?;
+        holds(browser, &axe, "no plan").await
+    })
+    .await
+}

@@ -283,7 +283,7 @@ fn save(path: &str, run: RivalRun, scenario: &Scenario, place: (usize, usize)) -
         rival: place_of(place.1),
         evidence,
     });
-    let version = if ground.is_some() { 2 } else { 1 };
+    let version = record::log::version(ground.as_ref());
     let log = Log { version, engine: engine::VERSION.to_owned(), events: run.events, ground };
     let bytes = record::log::encode(&log).map_err(std::io::Error::other)?;
     std::fs::write(path, bytes)

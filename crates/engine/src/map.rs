@@ -5,6 +5,7 @@
 mod act;
 mod catalogue;
 mod complaint;
+mod derivation;
 mod drawing;
 mod event;
 mod ground;

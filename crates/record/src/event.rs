@@ -120,7 +120,7 @@ pub enum Event {
 /// A saved log of one search. [`crate::log`] reads and writes it.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Log {
-    /// The version of its bytes: 2 where it says what it rests on, else 1.
+    /// The version of its bytes ([`crate::log::version`]).
     pub version: u32,
     /// The version of the engine that wrote it.
     pub engine: String,

@@ -1,8 +1,9 @@
 //! What a log rests on, so that it can be proved again where it was not run: the scenario, the best
-//! plan, the rows that separation found and the bounds that were tightened.
+//! plan, the rows that separation found, the bounds that were tightened and the general cuts.
 
 use serde::{Deserialize, Serialize};
 
+use crate::derivation::Cuts;
 use crate::event::{Branching, NodeNumber};
 
 /// What a log holds beside its events.
@@ -27,6 +28,8 @@ pub struct Evidence {
     pub rows: Vec<FoundRow>,
     /// Bounds that were tightened.
     pub tightened: Vec<Tightening>,
+    /// General cuts.
+    pub cuts: Cuts,
 }
 
 /// A row of a family on demand.

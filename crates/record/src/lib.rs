@@ -7,7 +7,8 @@
 //! | [`mod@file`] | the scenario file: TOML text to scenario and back, each complaint with its place |
 //! | [`link`] | the link: a scenario text in the fragment of an address |
 //! | [`event`] | what a search reports as it goes |
-//! | [`log`] | the saved log (versions 1 and 2) and its digest |
+//! | [`log`] | the saved log (versions 1 to 3) and its digest |
+//! | [`derivation`] | general cuts of a log with how each follows |
 //! | [`ground`] | what a log rests on, so that it can be proved again |
 //! | [`message`] | [`message::Request`] and [`message::Reply`] |
 //! | [`opinion`] | the relaxation that a second LP code is asked about, and its answer |
@@ -22,6 +23,7 @@
 //! The scenario, the link and the log are versioned and open for ever; the messages are not
 //! promised. No value holds a NaN, and zeros are +0.
 
+pub mod derivation;
 pub mod event;
 pub mod file;
 pub mod ground;

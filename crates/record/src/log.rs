@@ -3,18 +3,20 @@
 //! ```text
 //! bytes 0..8    the letters "hullward"
 //! byte  8       the letter "L"
-//! byte  9       the version: 1 or 2
+//! byte  9       the version: 1, 2 or 3
 //! then          the engine's version and the list of events, in postcard's encoding
-//! in version 2  what the log rests on ([`crate::ground`])
+//! from 2 on     what the log rests on ([`crate::ground`]), in version 2 without general cuts
 //! ```
 //!
 //! Old logs open for ever: the events of version 1 keep their numbers and fields; whoever adds
-//! to [`Event`] or [`crate::ground`] in a way that changes these bytes writes version 3 and still
-//! reads the others. A log without a ground is written as version 1.
+//! to [`Event`] or [`crate::ground`] in a way that changes these bytes writes version 4 and still
+//! reads the others. A log is written as the oldest version that holds it ([`version`]).
 
 use std::fmt;
 
+use crate::derivation::Cuts;
 use crate::event::{Event, Log};
+use crate::ground::{Evidence, FoundRow, Ground, Tightening};
 use crate::hash;
 
 const HEAD: &[u8; 9] = b"hullwardL";
@@ -40,7 +42,7 @@ impl fmt::Display for LogError {
         match self {
             Self::NoLog => formatter.write_str("this is no log of a search"),
             Self::Version(version) => {
-                write!(formatter, "the log is of version {version}; this engine reads 1 and 2")
+                write!(formatter, "the log is of version {version}; this engine reads 1 to 3")
             }
             Self::Malformed => formatter.write_str("the log is damaged or cut short"),
             Self::TooLong => formatter.write_str("the log is longer than 256 MiB"),
@@ -50,24 +52,45 @@ impl fmt::Display for LogError {
 
 impl std::error::Error for LogError {}
 
+/// The version of a log that rests on this.
+#[must_use]
+pub fn version(ground: Option<&Ground>) -> u32 {
+    ground.map_or(1, |ground| if ground.evidence.cuts == Cuts::default() { 2 } else { 3 })
+}
+
+/// What a search found as a log of version 2 has it.
+type Uncut = (Vec<(u32, f64)>, Vec<FoundRow>, Vec<Tightening>);
+
+fn with_cuts((scenario, instance, rival, found): (String, u32, u32, Uncut)) -> Ground {
+    let (plan, rows, tightened) = found;
+    let evidence = Evidence { plan, rows, tightened, cuts: Cuts::default() };
+    Ground { scenario, instance, rival, evidence }
+}
+
 /// A log as bytes: the same log gives the same bytes.
 ///
 /// # Errors
 /// [`LogError::TooLong`]; [`LogError::Version`] for a version that does not go with its ground.
 pub fn encode(log: &Log) -> Result<Vec<u8>, LogError> {
-    let version = if log.ground.is_some() { 2 } else { 1 };
-    if log.version != u32::from(version) {
-        return Err(LogError::Version(u8::try_from(log.version).unwrap_or(u8::MAX)));
+    let number = u8::try_from(log.version).unwrap_or(u8::MAX);
+    if log.version != version(log.ground.as_ref()) {
+        return Err(LogError::Version(number));
     }
+    let (engine, events) = (&log.engine, &log.events);
     let body = match &log.ground {
-        None => postcard::to_allocvec(&(&log.engine, &log.events)),
-        Some(ground) => postcard::to_allocvec(&(&log.engine, &log.events, ground)),
+        None => postcard::to_allocvec(&(engine, events)),
+        Some(ground) if number == 2 => {
+            let Ground { scenario, instance, rival, evidence } = ground;
+            let found = (&evidence.plan, &evidence.rows, &evidence.tightened);
+            postcard::to_allocvec(&(engine, events, (scenario, instance, rival, found)))
+        }
+        Some(ground) => postcard::to_allocvec(&(engine, events, ground)),
     };
     let body = body.map_err(|_| LogError::Malformed)?;
     if body.len() > LONGEST_LOG {
         return Err(LogError::TooLong);
     }
-    Ok([HEAD.as_slice(), &[version], &body].concat())
+    Ok([HEAD.as_slice(), &[number], &body].concat())
 }
 
 /// A log from bytes.
@@ -85,7 +108,10 @@ pub fn decode(bytes: &[u8]) -> Result<Log, LogError> {
             (Log { version: 1, engine, events, ground: None }, left)
         }),
         2 => postcard::take_from_bytes(body).map(|((engine, events, ground), left)| {
-            (Log { version: 2, engine, events, ground: Some(ground) }, left)
+            (Log { version: 2, engine, events, ground: Some(with_cuts(ground)) }, left)
+        }),
+        3 => postcard::take_from_bytes(body).map(|((engine, events, ground), left)| {
+            (Log { version: 3, engine, events, ground: Some(ground) }, left)
         }),
         newer => return Err(LogError::Version(newer)),
     };
@@ -105,8 +131,8 @@ pub fn digest(events: &[Event]) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::derivation::{Derivation, FoundCut, Source};
     use crate::event::{Branching, NodeNumber, NodeState, Origin, Side};
-    use crate::ground::Ground;
 
     fn sample() -> Log {
         let root = NodeNumber(1);
@@ -153,8 +179,8 @@ mod tests {
         assert_eq!(decode(&bytes[..bytes.len() - 1]), Err(LogError::Malformed));
         assert_eq!(decode(&[bytes.as_slice(), &[0]].concat()), Err(LogError::Malformed));
         let mut newer = bytes;
-        newer[9] = 3;
-        assert_eq!(decode(&newer), Err(LogError::Version(3)));
+        newer[9] = 4;
+        assert_eq!(decode(&newer), Err(LogError::Version(4)));
         assert_eq!(encode(&Log { version: 2, ..sample() }), Err(LogError::Version(2)));
     }
 
@@ -165,6 +191,19 @@ mod tests {
         let bytes = encode(&log).expect("version 2");
         assert_eq!(bytes[9], 2);
         assert_eq!(decode(&bytes), Ok(log.clone()));
-        assert_eq!(encode(&Log { version: 1, ..log }), Err(LogError::Version(1)));
+        assert_eq!(encode(&Log { version: 1, ..log.clone() }), Err(LogError::Version(1)));
+        let mut cut = log;
+        let evidence = &mut cut.ground.as_mut().expect("a ground").evidence;
+        evidence.cuts.sources.push(Source::Row(FoundRow::Written(4)));
+        evidence.cuts.cuts.push(FoundCut {
+            class: "cover".to_owned(),
+            entries: vec![(2, "1".to_owned()), (5, "1".to_owned())],
+            side: "1".to_owned(),
+            derivation: Derivation::Knapsack((0, true)),
+        });
+        assert_eq!(encode(&cut), Err(LogError::Version(2)));
+        cut.version = version(cut.ground.as_ref());
+        let bytes = encode(&cut).expect("version 3");
+        assert_eq!((bytes[9], decode(&bytes)), (3, Ok(cut)));
     }
 }

@@ -67,6 +67,9 @@ fn whole(found: &AuditReport) -> String {
 /// What else was proved, and how far beyond the log's own branchings that went.
 fn further(found: &AuditReport) -> String {
     let mut parts = Vec::new();
+    if found.cuts > 0 {
+        parts.push(format!("{} proved as well", of(u64::from(found.cuts), "general cut")));
+    }
     if found.tightened > 0 {
         let bounds = of(u64::from(found.tightened), "tightened bound");
         parts.push(format!("{bounds} proved as well"));

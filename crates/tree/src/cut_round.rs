@@ -11,7 +11,7 @@ use separate::general::{
 };
 
 use crate::branching::is_fractional;
-use crate::relaxation::Relaxation;
+use crate::relaxation::{Relaxation, RowOrigin};
 use crate::round_trip::RoundTrip;
 use crate::settings::Cuts;
 
@@ -166,6 +166,17 @@ impl CutRound {
             }
         }
         true
+    }
+
+    /// Where a row that derivations speak of comes from: a row of the relaxation, or a member that was
+    /// put behind them.
+    pub(crate) fn origin(&self, row: usize, relaxation: &Relaxation) -> Option<RowOrigin> {
+        let own = relaxation.origins();
+        own.get(row).cloned().or_else(|| {
+            let members = self.structures.trips.as_ref()?.members();
+            let (family, subset) = members.get(row.checked_sub(own.len())?)?.clone();
+            Some(RowOrigin::Member { family, subset })
+        })
     }
 
     fn tableau(&mut self, relaxation: &mut Relaxation, frame: &Frame, column: ColumnId) {

@@ -12,6 +12,7 @@ use separate::general::{Class, Frame, GeneralCut, choose, follows};
 
 use crate::cut_round::CutRound;
 use crate::event::{Event, NodeId, NodeState};
+use crate::ledger::Sources;
 use crate::pool::Pool;
 use crate::relaxation::{Relaxation, RowOrigin};
 use crate::search::{Hand, Job, PointInHand, Progress, Purpose, Search};
@@ -63,6 +64,7 @@ pub struct CutsResult {
 pub(crate) struct Cutting {
     frame: Frame,
     pool: Pool,
+    sources: Sources,
     result: CutsResult,
     done: bool,
     stalled: u32,
@@ -80,6 +82,7 @@ impl Cutting {
         Self {
             frame: Frame::new(model),
             pool: Pool::default(),
+            sources: Sources::default(),
             result: CutsResult::default(),
             done: false,
             stalled: 0,
@@ -89,6 +92,11 @@ impl Cutting {
             fresh: Vec::new(),
             before: None,
         }
+    }
+
+    /// The rows that cuts rest on, and the cuts of the relaxation with those that they rest on.
+    pub(crate) fn told(&self) -> (Vec<RowOrigin>, Vec<GeneralCut>) {
+        self.sources.told(&self.pool)
     }
 
     /// The basis of the last relaxation with cuts.
@@ -133,7 +141,11 @@ impl Cutting {
 
     /// The cuts of a round that are taken, with their numbers: the best that are not parallel, those
     /// of the pool among them, each checked.
-    fn chosen(&mut self, round: &mut CutRound) -> Vec<(usize, GeneralCut)> {
+    fn chosen(
+        &mut self,
+        round: &mut CutRound,
+        relaxation: &Relaxation,
+    ) -> Vec<(usize, GeneralCut)> {
         let mut found = self.pool.violated(&round.x);
         found.append(&mut round.found);
         let mut taken: Vec<(usize, GeneralCut)> = Vec::new();
@@ -146,7 +158,8 @@ impl Cutting {
                     taken.push((number, cut));
                 }
                 None if follows(&cut, &round.rows, &self.frame) => {
-                    taken.push((next, cut));
+                    let origin = |row: usize| round.origin(row, relaxation);
+                    taken.push((next, self.sources.keep(cut, &origin)));
                     next += 1;
                 }
                 None => self.result.refused += 1,
@@ -235,7 +248,7 @@ impl Search {
         if more {
             return None;
         }
-        let cuts = cutting.chosen(round);
+        let cuts = cutting.chosen(round, relaxation);
         if cuts.is_empty() {
             return self.no_more_cuts();
         }

@@ -81,6 +81,7 @@ mod fix;
 mod heuristics;
 mod hold;
 mod inspect;
+mod ledger;
 mod measures;
 mod node;
 mod open;
@@ -105,7 +106,7 @@ mod tour;
 mod work;
 
 pub use acts::{Act, Acted, Refusal};
-pub use audit::{Audit, AuditResult, Claim, Fault, Judgement, LoggedRow, Testimony};
+pub use audit::{Audit, AuditResult, Claim, Fault, Judgement, LoggedRow, Source, Testimony};
 pub use conflict::{Certainty, Conflict, ConflictLimits, ConflictResult};
 pub use course::Found;
 pub use cutting::{ByClass, CutsResult};
@@ -118,7 +119,7 @@ pub use measures::{Estimate, Gains, Leaves, Measures};
 pub use proving::standings;
 pub use root::{RootResult, Status};
 pub use search::{Progress, Search, Work};
-pub use separate::general::{Class, Classes};
+pub use separate::general::{Class, Classes, Derivation, GeneralCut};
 pub use settings::{Branching, Cuts, NodeWork, Selection, Settings};
 pub use summary::{NodeWorkCounts, Summary};
 

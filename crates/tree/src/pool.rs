@@ -91,6 +91,16 @@ impl Pool {
         self.cuts.len()
     }
 
+    /// A cut by its number.
+    pub(crate) fn cut(&self, number: usize) -> Option<&GeneralCut> {
+        self.cuts.get(number).map(|pooled| &pooled.cut)
+    }
+
+    /// Whether a cut is in the relaxation.
+    pub(crate) fn is_inside(&self, number: usize) -> bool {
+        self.cuts.get(number).is_some_and(|pooled| pooled.inside)
+    }
+
     /// How many cuts of each class are in the relaxation.
     pub(crate) fn inside(&self) -> [u32; Class::ALL.len()] {
         let mut counts = [0; Class::ALL.len()];

@@ -20,7 +20,7 @@ use crate::event::{Branch, Side};
 use crate::proving::Proving;
 
 /// Where a row of the relaxation comes from.
-#[derive(Debug, Clone, PartialEq, Eq)]
+#[derive(Debug, Clone, PartialEq, Eq, PartialOrd, Ord)]
 pub(crate) enum RowOrigin {
     /// A written row of the model.
     Written(RowId),

@@ -134,7 +134,7 @@ fn changes(log: &Log, leaf: NodeNumber) -> Vec<(&'static str, Log)> {
 
 #[test]
 fn a_log_that_is_tampered_with_in_any_leaf_is_refused_with_its_number() {
-    for (name, scenario) in scenarios().into_iter().take(3) {
+    for (name, scenario) in scenarios().into_iter().take(4) {
         let log = saved(&format!("t-{name}"), &scenario);
         for leaf in leaves(&log) {
             for (what, other) in changes(&log, leaf) {
@@ -210,4 +210,29 @@ fn a_search_that_a_limit_stopped_is_no_proof() {
     let found: serde_json::Value = serde_json::from_slice(&output.stdout).expect("JSON");
     assert_eq!(found["judgement"], "open");
     assert!(found["open"].as_array().is_some_and(|open| !open.is_empty()), "{found}");
+}
+
+#[test]
+fn a_log_that_is_tampered_with_in_any_cut_is_refused_with_its_number() {
+    let (name, scenario) = scenarios().remove(3);
+    let log = saved("cuts", &scenario);
+    assert_eq!(log.version, 3);
+    let (status, words) = proved("cuts", &log);
+    assert_eq!(status, Some(0), "{words}");
+    let cuts = &log.ground.as_ref().expect("a ground").evidence.cuts.cuts;
+    assert!(words.contains(&format!("{} general cuts proved as well", cuts.len())), "{words}");
+    for place in 0..cuts.len() {
+        let mut other = log.clone();
+        let evidence = &mut other.ground.as_mut().expect("a ground").evidence;
+        evidence.cuts.cuts[place].side = "-1000".to_owned();
+        let (status, words) = proved("cuts", &other);
+        assert_eq!(status, Some(2), "{name}: {words}");
+        assert!(words.contains(&format!("rests on cut {} (", place + 1)), "{words}");
+    }
+    let mut other = log;
+    let evidence = &mut other.ground.as_mut().expect("a ground").evidence;
+    evidence.cuts.cuts[0].entries[0].0 = u32::MAX;
+    let (status, words) = proved("cuts", &other);
+    assert_eq!(status, Some(2), "{name}: {words}");
+    assert!(words.contains("cannot be read"), "{words}");
 }

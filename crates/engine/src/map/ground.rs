@@ -7,6 +7,7 @@ use record::results::{AuditReport, Judgement};
 use record::scenario::Run;
 use tree::{Branch, LoggedRow, NodeId, Testimony};
 
+use super::derivation::{cuts, cuts_of};
 use super::event::{branch, branch_of, logged, number};
 use super::{settings, tidy};
 
@@ -26,10 +27,11 @@ pub(crate) fn evidence(search: &tree::Search) -> Evidence {
                 after: branches(after),
             })
             .collect(),
+        cuts: cuts(&told.sources, &told.cuts),
     }
 }
 
-fn found_row(row: &LoggedRow) -> FoundRow {
+pub(super) fn found_row(row: &LoggedRow) -> FoundRow {
     match row {
         LoggedRow::Written(row) => FoundRow::Written(row.0),
         LoggedRow::Member(family, subset) => FoundRow::Member {
@@ -53,7 +55,7 @@ pub(crate) fn testimony(
     let mut told = Testimony {
         plan: vec![0.0; columns],
         cutoff: run.best_known,
-        own_bounds: settings(run, 0).cuts.is_empty(),
+        own_bounds: settings(run, 0).cuts.is_empty() || !evidence.cuts.cuts.is_empty(),
         ..Testimony::default()
     };
     for &(column, value) in &evidence.plan {
@@ -63,6 +65,7 @@ pub(crate) fn testimony(
     for row in &evidence.rows {
         told.rows.push(row_of(row));
     }
+    (told.sources, told.cuts) = cuts_of(&evidence.cuts, columns)?;
     for event in events {
         if let Event::Created { branching: Some(branching), .. } = event
             && branching.column as usize >= columns
@@ -82,7 +85,7 @@ pub(crate) fn testimony(
     Ok(told)
 }
 
-fn row_of(row: &FoundRow) -> LoggedRow {
+pub(super) fn row_of(row: &FoundRow) -> LoggedRow {
     match row {
         FoundRow::Written(row) => LoggedRow::Written(RowId(*row)),
         FoundRow::Member { family, subset } => LoggedRow::Member(
@@ -108,6 +111,7 @@ pub(crate) fn audit_report(audit: &tree::Audit) -> AuditReport {
         leaves: found.leaves,
         empty: found.empty,
         tightened: found.tightened,
+        cuts: found.cuts,
         parts: found.parts,
         open: found.open.into_iter().map(|node| node.0).collect(),
         faults: found.faults.into_iter().map(|fault| (fault.node.0, fault.why)).collect(),

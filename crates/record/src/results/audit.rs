@@ -32,6 +32,9 @@ pub struct AuditReport {
     pub empty: u32,
     /// Tightened bounds that were proved.
     pub tightened: u32,
+    /// General cuts whose derivations were proved.
+    #[serde(default)]
+    pub cuts: u32,
     /// Parts into which leaves were branched on to prove them.
     pub parts: u32,
     /// Leaves that are not proved.

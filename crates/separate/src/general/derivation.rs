@@ -71,3 +71,23 @@ pub enum Derivation {
         cycles: Vec<(Vec<usize>, Combination)>,
     },
 }
+
+impl Derivation {
+    /// Gives each row that it speaks of another number, in the order in which they come. `O(rows)`.
+    pub fn renumber(&mut self, number: &mut dyn FnMut(usize) -> usize) {
+        let mut used = |used: &mut Used| used.row = number(used.row);
+        match self {
+            Self::Rounding { sum, .. } => sum.iter_mut().for_each(|(row, _)| used(row)),
+            Self::Knapsack(row) => used(row),
+            Self::Conflicts { witnesses, .. } => witnesses.iter_mut().for_each(used),
+            Self::Cases { proofs, .. } => {
+                proofs.iter_mut().flatten().for_each(|(row, _)| *row = number(*row));
+            }
+            Self::Paths { pairs, cycles, .. } => {
+                pairs.iter_mut().for_each(|(.., row)| used(row));
+                let rows = cycles.iter_mut().flat_map(|(_, rows)| rows);
+                rows.for_each(|(row, _)| *row = number(*row));
+            }
+        }
+    }
+}

@@ -11,7 +11,7 @@
 
 use std::collections::{BTreeMap, BTreeSet};
 
-use model::{ColumnId, LabelId, Model, Number, Row, nearest_f64};
+use model::{ColumnId, FamilyState, LabelId, Model, Number, Row, SubsetFamilyId, nearest_f64};
 
 use super::aggregate::Frame;
 use super::check::broken;
@@ -39,6 +39,8 @@ pub struct Trips {
     order: BTreeMap<Arc, (usize, Number)>,
     /// What each cycle breaks, once it was looked for.
     known: BTreeMap<Vec<usize>, Option<Combination>>,
+    /// The members of families that were put behind the rows, in order.
+    members: Vec<(SubsetFamilyId, BTreeSet<LabelId>)>,
 }
 
 impl Trips {
@@ -71,13 +73,20 @@ impl Trips {
         let leave: Option<Vec<usize>> = all.clone().map(|k| sum(&|arc| arc.0 == k)).collect();
         let enter: Option<Vec<usize>> = all.map(|k| sum(&|arc| arc.1 == k)).collect();
         let (leave, enter, known) = (leave?, enter?, BTreeMap::new());
-        Some(Self { stops: stops.to_vec(), columns, leave, enter, order, known })
+        let (stops, members) = (stops.to_vec(), Vec::new());
+        Some(Self { stops, columns, leave, enter, order, known, members })
     }
 
     /// How many stops there are.
     #[must_use]
     pub fn len(&self) -> usize {
         self.stops.len()
+    }
+
+    /// The members of families that were put behind the rows, in order.
+    #[must_use]
+    pub fn members(&self) -> &[(SubsetFamilyId, BTreeSet<LabelId>)] {
+        &self.members
     }
 
     /// Whether there are none.
@@ -197,7 +206,7 @@ impl Trips {
 
     /// Rows that a cycle breaks.
     fn breaking(
-        &self,
+        &mut self,
         cycle: &[usize],
         (model, frame): (&Model, &Frame),
         rows: &mut Vec<Row>,
@@ -220,8 +229,9 @@ impl Trips {
         let outside: BTreeSet<usize> = (0..self.len()).filter(|k| !inside.contains(k)).collect();
         for set in [&inside, &outside] {
             let labels: BTreeSet<LabelId> = set.iter().map(|&k| self.stops[k]).collect();
-            for family in model.subset_families() {
-                let fits = labels.iter().all(|label| family.ground.contains(label));
+            for (id, family) in model.subset_families().iter().enumerate() {
+                let out = model.families()[family.family.index()].state == FamilyState::Out;
+                let fits = !out && labels.iter().all(|label| family.ground.contains(label));
                 if !fits || !family.admits(&labels) {
                     continue;
                 }
@@ -229,6 +239,7 @@ impl Trips {
                 let y = Number::from(if member.upper.is_some() { 1 } else { -1 });
                 let number = rows.iter().position(|row| *row == member).unwrap_or(rows.len());
                 if number == rows.len() {
+                    self.members.push((SubsetFamilyId::from_index(id), labels.clone()));
                     rows.push(member);
                 }
                 let tries = self.with_sums(&(number, y), &inside, &outside);

@@ -6,10 +6,12 @@
 //! better plan away, and proves each leaf by multipliers or a ray of its own in exact arithmetic.
 //! Its linear programs are solved anew, so no number of the search's own path is used.
 //!
-//! General cuts are not needed: where a leaf was closed with their help and its rows alone do not
-//! close it, the audit branches on within the leaf. A log is refused with the node at which it is
+//! General cuts are told with how each follows from rows; each derivation is checked in exact
+//! arithmetic before the cut is used. Where a leaf is not closed by the rows in hand, as in a log
+//! without derivations, the audit branches on within the leaf. A log is refused with the node at which it is
 //! wrong; a leaf that the limits leave unproved is named as open.
 
+mod derived;
 mod leaf;
 mod shape;
 mod testimony;
@@ -26,8 +28,9 @@ use crate::rounds::Rounds;
 use crate::solution::{Checker, Completed, Solution, Verdict};
 use crate::target::{Target, decimal, signed};
 
+use derived::Derived;
 use leaf::{Goal, Leaf, Outcome};
-pub use testimony::{Claim, LoggedRow, Testimony};
+pub use testimony::{Claim, LoggedRow, Source, Testimony};
 
 /// How far a value of the log may be from the exact one, relative to max(1, |value|): it is
 /// printed as a float.
@@ -73,6 +76,8 @@ pub struct AuditResult {
     pub empty: u32,
     /// Tightened bounds proved.
     pub tightened: u32,
+    /// General cuts whose derivations were proved.
+    pub cuts: u32,
     /// Parts into which leaves were branched on to prove them.
     pub parts: u32,
     /// Leaves that are not proved.
@@ -82,9 +87,11 @@ pub struct AuditResult {
 }
 
 /// What is done next.
-#[derive(Debug, Clone, PartialEq)]
+#[derive(Debug, Clone, Copy, PartialEq)]
 enum Stage {
     Shape,
+    /// The general cuts from this place on.
+    Cuts(usize),
     Plan,
     Completing,
     /// The tightened bounds of a node, from this one on, and then the node itself.
@@ -99,6 +106,7 @@ pub struct Audit {
     testimony: Testimony,
     tools: Tools,
     stage: Stage,
+    derived: Option<Derived>,
     leaf: Option<Leaf>,
     result: AuditResult,
     ticks: u64,
@@ -141,12 +149,14 @@ impl Audit {
             leaves: 0,
             empty: 0,
             tightened: 0,
+            cuts: 0,
             parts: 0,
             open: Vec::new(),
             faults: testimony.faults.clone(),
         };
         let stage = Stage::Shape;
-        let mut audit = Self { model, testimony, tools, stage, leaf: None, result, ticks: 0 };
+        let mut audit =
+            Self { model, testimony, tools, stage, derived: None, leaf: None, result, ticks: 0 };
         audit.add_rows();
         Ok(audit)
     }
@@ -186,7 +196,7 @@ impl Audit {
         match self.stage {
             Stage::Node(node, _) => (node, all),
             Stage::Done => (all, all),
-            Stage::Shape | Stage::Plan | Stage::Completing => (0, all),
+            Stage::Shape | Stage::Cuts(_) | Stage::Plan | Stage::Completing => (0, all),
         }
     }
 
@@ -214,7 +224,11 @@ impl Audit {
                 for fault in shape::faults(&self.model, &self.testimony.claims) {
                     self.fault(fault.node, fault.why);
                 }
-                self.stage = Stage::Plan;
+                self.stage = Stage::Cuts(0);
+                self.refuse();
+            }
+            Stage::Cuts(place) => {
+                self.cut(place);
                 self.refuse();
             }
             Stage::Plan => {
@@ -243,6 +257,37 @@ impl Audit {
     fn fault(&mut self, node: NodeId, why: impl Into<String>) {
         if self.result.faults.len() < MOST_FAULTS {
             self.result.faults.push(Fault { node, why: why.into() });
+        }
+    }
+
+    /// The derivation of the cut at a place; behind the last all of them become rows.
+    fn cut(&mut self, place: usize) {
+        let Testimony { sources, cuts, .. } = &self.testimony;
+        if place == 0 && !cuts.is_empty() {
+            match Derived::new(&self.model, sources, cuts) {
+                Ok(derived) => self.derived = Some(derived),
+                Err(why) => return self.fault(NodeId::ROOT, format!("has a cut that {why}")),
+            }
+        }
+        let Some(derived) = self.derived.as_ref().filter(|_| place < cuts.len()) else {
+            self.derived = None;
+            self.stage = Stage::Plan;
+            let rows: Vec<_> = cuts.iter().cloned().enumerate().collect();
+            if self.tools.relaxation.add_cuts(&rows).is_err() {
+                self.fault(NodeId::ROOT, "has cuts that cannot be added");
+            }
+            return;
+        };
+        let (holds, ticks) = derived.proves(place, sources, cuts);
+        self.ticks += ticks;
+        self.stage = Stage::Cuts(place + 1);
+        if holds {
+            self.result.cuts += 1;
+        } else {
+            let (class, number) = (cuts[place].class.word(), place + 1);
+            let why =
+                format!("rests on cut {number} ({class}), which does not follow from its rows");
+            self.fault(NodeId::ROOT, why);
         }
     }
 

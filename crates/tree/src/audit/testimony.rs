@@ -3,8 +3,10 @@
 use std::collections::BTreeSet;
 
 use model::{LabelId, RowId, SubsetFamilyId};
+use separate::general::GeneralCut;
 
 use super::{Fault, opposite};
+use crate::cutting::Cutting;
 use crate::event::{Branch, Event, NodeId, NodeState};
 use crate::relaxation::RowOrigin;
 use crate::search::Search;
@@ -44,6 +46,15 @@ pub enum LoggedRow {
     Member(SubsetFamilyId, BTreeSet<LabelId>),
 }
 
+/// A row that the derivation of a general cut rests on.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub enum Source {
+    /// A row of the model.
+    Row(LoggedRow),
+    /// A cut, by place.
+    Cut(usize),
+}
+
 /// What is said of a whole search.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Testimony {
@@ -57,9 +68,14 @@ pub struct Testimony {
     pub plan: Vec<f64>,
     /// Rows that separation added.
     pub rows: Vec<LoggedRow>,
+    /// The rows that derivations of cuts speak of by place.
+    pub sources: Vec<Source>,
+    /// General cuts, each with a derivation from sources, of which the cuts come before it.
+    pub cuts: Vec<GeneralCut>,
     /// A value known to be reachable that was given.
     pub cutoff: Option<f64>,
-    /// Whether each node's bound is that of its rows alone, without general cuts.
+    /// Whether each node's bound is that of its rows, of those that separation added and of the cuts
+    /// that are told.
     pub own_bounds: bool,
     /// What is wrong with the order of the events.
     pub faults: Vec<Fault>,
@@ -167,6 +183,16 @@ impl Testimony {
     }
 }
 
+fn source(origin: &RowOrigin) -> Source {
+    match origin {
+        RowOrigin::Written(row) => Source::Row(LoggedRow::Written(*row)),
+        RowOrigin::Member { family, subset } => {
+            Source::Row(LoggedRow::Member(*family, subset.clone()))
+        }
+        RowOrigin::Cut(_, number) => Source::Cut(*number),
+    }
+}
+
 impl Search {
     /// What the search says of itself, to be proved by an [`Audit`](crate::Audit): what a log holds
     /// of it. `O(nodes + tightened + rows)`.
@@ -193,22 +219,24 @@ impl Search {
     #[must_use]
     pub fn evidence(&self) -> Testimony {
         let origins = self.relaxation.as_ref().map_or(&[][..], |r| r.origins());
-        let added = origins.iter().filter_map(|origin| match origin {
-            RowOrigin::Written(row) if !self.model.row_is_in(*row) => {
-                Some(LoggedRow::Written(*row))
-            }
-            RowOrigin::Member { family, subset } => {
-                Some(LoggedRow::Member(*family, subset.clone()))
-            }
-            RowOrigin::Written(_) | RowOrigin::Cut(..) => None,
+        let added = origins.iter().filter(|origin| match origin {
+            RowOrigin::Written(row) => !self.model.row_is_in(*row),
+            RowOrigin::Member { .. } | RowOrigin::Cut(..) => true,
         });
+        let added = added.filter_map(|origin| match source(origin) {
+            Source::Row(row) => Some(row),
+            Source::Cut(_) => None,
+        });
+        let (sources, cuts) = self.cutting.as_ref().map(Cutting::told).unwrap_or_default();
         let incumbent = self.incumbent.as_ref();
         Testimony {
             incumbent: incumbent.map(|found| (found.node, found.value)),
             plan: incumbent.map_or_else(Vec::new, |found| found.solution.x.clone()),
             rows: added.collect(),
             cutoff: self.settings.cutoff,
-            own_bounds: self.settings.cuts.is_empty(),
+            own_bounds: true,
+            sources: sources.iter().map(source).collect(),
+            cuts,
             ..Testimony::default()
         }
     }

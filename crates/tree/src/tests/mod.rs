@@ -2,6 +2,7 @@
 
 mod acts;
 mod audit;
+mod audit_cuts;
 mod by_hand;
 mod conflict;
 mod cuts;

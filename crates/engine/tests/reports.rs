@@ -134,4 +134,40 @@ fn models_of_netlib_and_others() {
 #[test]
 fn models_of_miplib() {
     check("miplib3");
+    check("miplib3/pairs");
+}
+
+/// Every folder of the data that holds files has its reports and every list of reports has its
+/// folder, so that no file is left out.
+#[test]
+fn no_folder_is_left_out() {
+    let Some(data) = std::env::var_os("HULLWARD_DATA").map(PathBuf::from) else {
+        assert!(std::env::var("CI").as_deref() != Ok("true"), "HULLWARD_DATA names no folder");
+        println!("skipped: HULLWARD_DATA names no folder");
+        return;
+    };
+    let mut found = Vec::new();
+    let mut work = vec![data.clone()];
+    while let Some(folder) = work.pop() {
+        let mut holds = false;
+        for entry in fs::read_dir(&folder).expect("a folder") {
+            let path = entry.expect("an entry").path();
+            holds |= path.is_file();
+            work.extend(path.is_dir().then_some(path));
+        }
+        // the list of sources stands in the folder of folders
+        if holds && folder != data {
+            let name =
+                folder.strip_prefix(&data).expect("below it").to_string_lossy().replace('/', "-");
+            found.push(format!("{name}.txt"));
+        }
+    }
+    let kept =
+        fs::read_dir(Path::new(env!("CARGO_MANIFEST_DIR")).join("tests/reports")).expect("reports");
+    let mut kept: Vec<String> = kept
+        .map(|entry| entry.expect("a file").file_name().to_string_lossy().into_owned())
+        .collect();
+    found.sort();
+    kept.sort();
+    assert_eq!(found, kept);
 }

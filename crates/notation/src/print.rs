@@ -6,6 +6,7 @@ use std::fmt::Write as _;
 use dashu_int::{IBig, UBig};
 use model::Number;
 
+use crate::lex::prose::is_sentence;
 use crate::lex::token::Kind as Token;
 use crate::lex::{is_word_pair, lex};
 use crate::lists::Place;
@@ -56,7 +57,10 @@ pub(crate) fn no_comment(title: &str) -> String {
 fn no_part(printed: String) -> String {
     let tokens = lex(&printed, 0);
     match tokens.first() {
-        Some(first) if matches!(first.kind, Token::Data | Token::Definitions) => {
+        Some(first)
+            if matches!(first.kind, Token::Data | Token::Definitions)
+                || first.kind == Token::Word && is_sentence(&printed) =>
+        {
             let (word, rest) = printed.split_at(first.span.end as usize);
             format!("\\mathit{{{word}}}{rest}")
         }

@@ -109,3 +109,8 @@ fn models_that_nobody_looked_at_come_out() {
 fn models_as_journals_print_them_come_out() {
     all_come_out("models/printed");
 }
+
+#[test]
+fn models_of_further_problems_come_out() {
+    all_come_out("models/journals");
+}

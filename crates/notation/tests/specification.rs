@@ -211,6 +211,22 @@ fn statements() {
             "¦ z_i & \\ge \\, 1 \\quad \\forall i \\in V \\nonumber \\tag{fam}",
             Same(plain),
         ),
+        (
+            "{i,j} ∈ E holds whichever end E names first",
+            "E ⊆ V × V ¦ y_{i,j} ∈ {0,1} ∀ (i,j) ∈ E; \
+             Σ_{j : {i,j} ∈ E} z_j ≥ 1 ∀ i ∈ V (fam)",
+            Rows(5, "z[Birch] + z[Elm] ≥ 1"),
+        ),
+        (
+            "[n] is {1..n} behind ∈",
+            "n = 3 ¦ Σ_{k ∈ [n]} z_i ≥ 3 ∀ i ∈ V (fam)",
+            Rows(5, "3 z[Ash] ≥ 3"),
+        ),
+        (
+            "a sentence says nothing",
+            "¦ z_i ≥ 1 ∀ i ∈ V (fam)\n\nHere z_i = 1 if stop i is called at, else nothing",
+            Same(plain),
+        ),
         ("% and # start a comment", "¦ z_i ≥ 1 ∀ i ∈ V (fam) # so it is", Same(plain)),
         ("\\label vanishes", "¦ z_i ≥ 1 \\label{eq} ∀ i ∈ V (fam)", Same(plain)),
         ("a label is a final bracket behind white space", "¦ z_i ≥ 1 ∀ i ∈ V (fam)", Same(plain)),

@@ -103,10 +103,22 @@ impl Checker<'_> {
     }
 
     /// A bare name that is not bound and not declared.
-    fn is_new(&self, name: &Name, work: &Quantifier<'_>) -> bool {
+    pub(super) fn is_new(&self, name: &Name, work: &Quantifier<'_>) -> bool {
         let bare = name.indices.is_empty() && name.superscript.is_none();
         let waiting = work.pending.iter().any(|(n, _)| *n == name.text);
-        bare && (waiting || !self.is_known(&name.text))
+        bare && (waiting || !self.is_known(&name.text) || self.is_only_indexed(&name.text))
+    }
+
+    /// Whether a name has a meaning with indices only: bare, it can be an index as well
+    /// (`c ∈ C` beside the costs `c_{ij}`).
+    fn is_only_indexed(&self, name: &str) -> bool {
+        match self.names.get(name) {
+            Some(super::Global::Symbol(id)) if self.local(name).is_none() => {
+                let symbol = &self.symbols[*id];
+                !symbol.roots.is_empty() && symbol.shape == crate::plan::Shape::Number
+            }
+            _ => false,
+        }
     }
 
     fn new_name<'e>(&self, expression: &'e Expression, work: &Quantifier<'_>) -> Option<&'e Name> {
@@ -195,7 +207,9 @@ impl Checker<'_> {
     /// Whether a pattern holds a new name.
     fn has_new(&self, pattern: &Expression, work: &Quantifier<'_>) -> bool {
         match &pattern.kind {
-            Kind::Tuple(items) => items.iter().any(|item| self.new_name(item, work).is_some()),
+            Kind::Tuple(items) | Kind::Set(items) => {
+                items.iter().any(|item| self.new_name(item, work).is_some())
+            }
             Kind::Name(_) => self.new_name(pattern, work).is_some(),
             _ => false,
         }
@@ -264,6 +278,11 @@ impl Checker<'_> {
         if items.len() != roots.len() {
             return self.report(shapes::tuple_size(roots.len(), items.len(), left.span));
         }
+        let set = if self.is_half_edge(left, work) {
+            self.both_ways(set, &roots, left.span)
+        } else {
+            set
+        };
         let tuple = self.tuple_name(left, roots.len(), work);
         let pattern = self.pattern(&items, &roots, work)?;
         self.name_tuple(tuple, roots.len(), work);
@@ -327,7 +346,7 @@ impl Checker<'_> {
         work: &Quantifier<'_>,
     ) -> Vec<Expression> {
         let names: Vec<String> = match &left.kind {
-            Kind::Tuple(items) => return items.clone(),
+            Kind::Tuple(items) | Kind::Set(items) => return items.clone(),
             Kind::Name(name) if wanted > 1 && self.is_new(name, work) => {
                 let letters: Vec<String> = name.text.chars().map(String::from).collect();
                 if letters.len() == wanted {

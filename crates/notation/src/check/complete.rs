@@ -9,6 +9,7 @@ use crate::diagnostic::{Diagnostic, names as message};
 use crate::parse::needed;
 use crate::place::Span;
 use crate::syntax::{Additive, Clause, Expression, Formulation, Kind, Line, Name, Relation};
+use model::Number;
 
 /// A tree with nothing left unsaid, and what was assumed.
 pub(super) struct Completed {
@@ -21,8 +22,9 @@ pub(super) struct Completed {
 /// `O(tree · log names)`, and for each bare domain another walk.
 pub(super) fn completed(tree: &Formulation) -> Completed {
     let mut out = Completed { tree: tree.clone(), habits: BTreeMap::new(), notes: Vec::new() };
-    let declared = declared(tree);
-    let aliases = aliases(tree, &declared, &mut out.notes);
+    super::raised::join(&mut out.tree);
+    let declared = declared(&out.tree);
+    let aliases = aliases(&out.tree, &declared, &mut out.notes);
     if !aliases.is_empty() {
         rename(&mut out.tree, &aliases);
     }
@@ -136,8 +138,13 @@ fn rename(tree: &mut Formulation, aliases: &BTreeMap<String, String>) {
             name.text.clone_from(plain);
         }
     };
+    each_name_of(tree, &mut rename);
+}
+
+/// Every name of a tree, to be changed.
+pub(super) fn each_name_of(tree: &mut Formulation, rename: &mut dyn FnMut(&mut Name)) {
     if let Some(objective) = &mut tree.objective {
-        crate::syntax::each_name(&mut objective.expression, &mut rename);
+        crate::syntax::each_name(&mut objective.expression, rename);
     }
     let lines = tree.data.iter_mut().chain(&mut tree.definitions).chain(&mut tree.statements);
     for line in lines {
@@ -145,7 +152,7 @@ fn rename(tree: &mut Formulation, aliases: &BTreeMap<String, String>) {
         let clauses = line.clauses.iter_mut();
         let clauses = clauses.flat_map(|c| c.items.iter_mut().chain(&mut c.such_that));
         for expression in line.left.iter_mut().chain(links).chain(clauses) {
-            crate::syntax::each_name(expression, &mut rename);
+            crate::syntax::each_name(expression, rename);
         }
     }
 }
@@ -280,10 +287,58 @@ fn uses(tree: &Formulation, names: &BTreeSet<String>) -> Uses {
 
 /// Of two sets the one that holds the other; none where neither is the other less some elements.
 fn wider(one: Expression, other: &Expression) -> Option<Expression> {
+    if let Some(range) = wider_range(&one, other) {
+        return Some(range);
+    }
     if one.kind == other.kind || without(other).is_some_and(|whole| whole.kind == one.kind) {
         return Some(one);
     }
     without(&one).is_some_and(|whole| whole.kind == other.kind).then(|| other.clone())
+}
+
+/// Of `{1..n}` and `{2..n−1}` the one that holds the other. Which of `{0..n}` and `{1..n}` is
+/// meant, nobody can tell.
+fn wider_range(one: &Expression, other: &Expression) -> Option<Expression> {
+    let (Kind::Range(a, b), Kind::Range(c, d)) = (&one.kind, &other.kind) else { return None };
+    let [(p, a), (q, b), (r, c), (s, d)] = [a, b, c, d].map(|e| shifted(e));
+    let zero = |n: &Number| *n == Number::ZERO;
+    let same = |x: Option<&Expression>, y: Option<&Expression>| match (x, y) {
+        (Some(x), Some(y)) => x.kind == y.kind,
+        (None, None) => true,
+        _ => false,
+    };
+    if !same(p, r) || !same(q, s) || a != c && p.is_none() && (zero(&a) || zero(&c)) {
+        return None;
+    }
+    match (a <= c && b >= d, c <= a && d >= b) {
+        (true, _) => Some(one.clone()),
+        (_, true) => Some(other.clone()),
+        _ => None,
+    }
+}
+
+/// An end of a range as what it begins with and a number: `n − 1` is `n` and −1.
+fn shifted(end: &Expression) -> (Option<&Expression>, Number) {
+    match &end.kind {
+        Kind::Number(value) => (None, value.clone()),
+        Kind::Additive(first, rest) => match (&rest[..], &first.kind) {
+            ([(Additive::Plus, by)], Kind::Name(_)) if number(by).is_some() => {
+                (Some(first), number(by).unwrap_or_default())
+            }
+            ([(Additive::Minus, by)], Kind::Name(_)) if number(by).is_some() => {
+                (Some(first), Number::ZERO - number(by).unwrap_or_default())
+            }
+            _ => (Some(end), Number::ZERO),
+        },
+        _ => (Some(end), Number::ZERO),
+    }
+}
+
+fn number(expression: &Expression) -> Option<Number> {
+    match &expression.kind {
+        Kind::Number(value) => Some(value.clone()),
+        _ => None,
+    }
 }
 
 /// `T` of `T ∖ S`.

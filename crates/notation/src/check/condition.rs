@@ -72,7 +72,12 @@ impl Checker<'_> {
     }
 
     fn membership(&mut self, left: &Expression, inside: bool, right: &Expression) -> Option<Node> {
-        let tuple = self.tuple(left);
+        let tuple = match &left.kind {
+            Kind::Set(ends) if ends.len() == 2 => {
+                self.tuple(&Expression { kind: Kind::Tuple(ends.clone()), span: left.span })
+            }
+            _ => self.tuple(left),
+        };
         let (set, roots) = self.set(right)?;
         let (nodes, found) = tuple?;
         if roots.is_empty() {
@@ -81,6 +86,12 @@ impl Checker<'_> {
         if roots.len() != found.len() {
             return self.report(message::tuple_size(roots.len(), found.len(), left.span));
         }
+        // an edge is in the set whichever of its ends that names first
+        let set = if matches!(left.kind, Kind::Set(_)) && roots.len() == 2 {
+            self.both_ways(set, &roots, left.span)
+        } else {
+            set
+        };
         Some(Node::Member(inside, nodes, Box::new(set)))
     }
 

@@ -7,12 +7,14 @@ mod complete;
 mod condition;
 mod declare;
 mod domain;
+mod edges;
 mod expression;
 mod family;
 mod indices;
 mod infer;
 mod names;
 mod order;
+mod raised;
 mod sets;
 mod usage;
 

@@ -99,7 +99,8 @@ impl Checker<'_> {
 
     /// A name that is one name.
     fn single(&mut self, name: &Name, span: Span) -> Option<Typed> {
-        if let Some(at) = self.local(&name.text) {
+        let shadowed = !name.indices.is_empty() && self.names.contains_key(&name.text);
+        if let Some(at) = self.local(&name.text).filter(|_| !shadowed) {
             self.lowest = self.lowest.min(at);
             let what = self.locals[at].what;
             if !name.indices.is_empty() {

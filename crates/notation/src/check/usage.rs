@@ -123,7 +123,7 @@ fn related<'t>(
     match relation {
         Relation::In | Relation::NotIn => {
             let size = match left.map(|e| &e.kind) {
-                Some(Kind::Tuple(items)) => items.len(),
+                Some(Kind::Tuple(items) | Kind::Set(items)) => items.len(),
                 _ => 1,
             };
             mark(right, size, found);

@@ -137,9 +137,11 @@ pub(crate) fn twin_rows(
 
 /// Rows without entries.
 pub(crate) fn empty_rows(family: &str, (rows, example): (usize, &str)) -> Diagnostic {
-    let counted = if rows == 1 { "the row".to_owned() } else { format!("{rows} of the rows of") };
-    let message =
-        format!("{counted} {} without an entry, such as {}", short(family), short_tuple(example));
+    let message = if rows == 1 {
+        format!("the row {} has no entry", short_tuple(example))
+    } else {
+        format!("{rows} rows of {} have no entry, such as {}", short(family), short_tuple(example))
+    };
     Diagnostic::warning("lint.empty-rows", Span::default(), message)
 }
 

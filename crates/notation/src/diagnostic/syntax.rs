@@ -40,6 +40,10 @@ pub(crate) fn outside_parts(span: Span) -> Diagnostic {
         .mend("begin with “data”, “minimise” or “subject to”")
 }
 
+pub(crate) fn prose(span: Span) -> Diagnostic {
+    Diagnostic::info("syntax.sentence", span, "a sentence: nothing of it becomes part of the model")
+}
+
 pub(crate) fn no_relation(span: Span) -> Diagnostic {
     Diagnostic::error(
         "syntax.no-relation",

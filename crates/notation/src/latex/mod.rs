@@ -6,6 +6,7 @@
 //! carries indices; elsewhere letters side by side are left to stand as they were written.
 
 mod expression;
+mod letters;
 mod name;
 mod reserved;
 
@@ -20,8 +21,9 @@ pub(crate) use reserved::{read_verbatim, remark, unescaped};
 
 /// The whole text, parts in their usual order. `O(tree · log)`.
 ///
-/// It needs `\usepackage{amsmath,amssymb}`. The title is a line of its own before the first
-/// environment.
+/// It needs `\usepackage{amsmath,amssymb}` and is set by pdfTeX as well as by its successors:
+/// lines at the top say how characters are set that pdfTeX does not know. The title is a line of
+/// its own before the first environment.
 #[must_use]
 pub fn latex(tree: &Formulation) -> String {
     let printer = Printer::new(tree);
@@ -43,7 +45,7 @@ pub fn latex(tree: &Formulation) -> String {
             let _ = write!(out, "\\begin{{align*}}\n{}\n\\end{{align*}}\n", rows.join(" \\\\\n"));
         }
     }
-    out
+    format!("{}{out}", letters::told(&out))
 }
 
 /// `\min` at the start of an objective would open a second one.

@@ -6,6 +6,7 @@ pub(crate) mod cases;
 mod foreign;
 mod macros;
 mod phrase;
+pub(crate) mod prose;
 mod table;
 mod tex;
 pub(crate) mod token;
@@ -106,6 +107,9 @@ impl Lexer<'_> {
 
     fn step(&mut self) {
         let Some(c) = self.rest().chars().next() else { return };
+        if c.is_alphabetic() && self.sentence() {
+            return;
+        }
         match c {
             _ if foreign::is_white(c) => self.white(),
             '#' | '%' => self.comment(),
@@ -305,6 +309,34 @@ impl Lexer<'_> {
     }
 }
 
+/// How a small, scripted or otherwise set letter is written in TeX: the command around it, and the
+/// plain letter.
+pub(crate) fn plain_letter(c: char) -> Option<(&'static str, String)> {
+    if let Some((up, plain)) = table::small(c) {
+        return Some((if up { "{}^" } else { "{}_" }, plain.to_string()));
+    }
+    if let Some(letter) = foreign::script(c) {
+        return Some(("\\mathcal", letter.to_string()));
+    }
+    if let Some(accent) = foreign::accent(c) {
+        return Some((accent_command(accent), String::new()));
+    }
+    let plain = foreign::plain(c)?.to_string();
+    let command = letter_command(&plain).map(|command| format!("\\{command}"));
+    Some(("", command.unwrap_or(plain)))
+}
+
+/// An accent that stands alone, behind its letter.
+fn accent_command(accent: &str) -> &'static str {
+    match accent {
+        "hat" => "\\hat",
+        "tilde" => "\\tilde",
+        "dot" => "\\dot",
+        "vec" => "\\vec",
+        _ => "\\bar",
+    }
+}
+
 /// The length of `. . .` at the start of `rest`.
 fn spaced_dots(rest: &str) -> Option<usize> {
     let mut at = 0;
@@ -447,12 +479,16 @@ fn settle_semicolons(tokens: &mut [Token], text: &str) {
         } else if kind.closes() {
             depth = depth.saturating_sub(1);
         }
-        quantified |= matches!(kind, Kind::ForAll | Kind::Dots);
+        quantified &= !tokens[i].gap.has(Gap::NEWLINE);
+        let pairs = kind == Kind::In && i > 0 && tokens[i - 1].kind == Kind::RightParen;
+        quantified |= pairs || matches!(kind, Kind::ForAll | Kind::Dots);
         if kind != Kind::Break {
             continue;
         }
         let semicolon = tokens[i].span.of(text) == ";";
-        if semicolon && (depth > 0 || quantified && goes_on(&tokens[i + 1..])) {
+        let inside = depth > 0 || quantified && goes_on(&tokens[i + 1..]);
+        let shares = !quantified && shares_quantifier(&tokens[..i], &tokens[i + 1..]);
+        if semicolon && (inside || shares) {
             tokens[i].kind = Kind::Comma;
         } else {
             depth = if semicolon { depth } else { 0 };
@@ -484,6 +520,18 @@ fn goes_on(rest: &[Token]) -> bool {
         }
         _ => false,
     }
+}
+
+/// Whether what follows a semicolon is another domain of the same line, and has the quantifier of
+/// both: `x_i ≥ 0; y_i ∈ {0,1} ∀ i`.
+fn shares_quantifier(before: &[Token], rest: &[Token]) -> bool {
+    let indexed = before.iter().rev().take_while(|t| t.kind != Kind::Break && !t.kind.is_part());
+    let indexed = indexed.take(40).any(|t| t.kind == Kind::Underscore);
+    let named = before.last().is_some_and(|t| !matches!(t.kind, Kind::RightParen | Kind::Tag));
+    let line = rest.iter().take_while(|t| t.kind != Kind::Break && !t.gap.has(Gap::NEWLINE));
+    let line: Vec<Kind> = line.map(|t| t.kind).take(80).collect();
+    let next = line.first() == Some(&Kind::Word) && line.get(1) == Some(&Kind::Underscore);
+    indexed && named && next && line.contains(&Kind::ForAll)
 }
 
 #[cfg(test)]

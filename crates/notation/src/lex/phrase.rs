@@ -4,7 +4,10 @@ use super::token::Kind;
 
 /// The token of a phrase in `\text{}` or of one that stands alone; `None` where it is only text.
 pub(super) fn phrase(inner: &str) -> Option<Kind> {
-    let words: Vec<&str> = inner.split_whitespace().collect();
+    let spaced = inner.contains(['\\', '~']);
+    let plain =
+        if spaced { inner.replace("\\,", " ").replace(['\\', '~'], " ") } else { inner.to_owned() };
+    let words: Vec<&str> = plain.split_whitespace().collect();
     let lower = words.join(" ").to_lowercase();
     let lower = lower.trim_matches([',', ':', ';', '.']);
     Some(match lower {

@@ -22,6 +22,8 @@ pub(super) fn sign(c: char) -> Option<Kind> {
         '∉' => Kind::NotIn,
         '⊂' | '⊊' => Kind::Subset,
         '⊆' => Kind::SubsetOrEqual,
+        '⊃' | '⊋' => Kind::Superset,
+        '⊇' => Kind::SupersetOrEqual,
         '≡' => Kind::Congruent,
         '∪' => Kind::Union,
         '∩' => Kind::Intersection,
@@ -131,6 +133,8 @@ pub(super) fn command(name: &str) -> Option<Kind> {
         "notin" => Kind::NotIn,
         "subset" | "subsetneq" | "subsetneqq" | "varsubsetneq" => Kind::Subset,
         "subseteq" | "subseteqq" => Kind::SubsetOrEqual,
+        "supset" | "supsetneq" => Kind::Superset,
+        "supseteq" | "supseteqq" => Kind::SupersetOrEqual,
         "le" | "leq" | "leqslant" | "leqq" => Kind::AtMost,
         "ge" | "geq" | "geqslant" | "geqq" => Kind::AtLeast,
         "lt" => Kind::Less,
@@ -193,9 +197,9 @@ pub(super) fn spaces(name: &str) -> bool {
 /// TeX commands that say nothing, with so many arguments.
 pub(super) fn dropped(name: &str) -> Option<u8> {
     Some(match name {
-        "label" | "hspace" | "vspace" | "phantom" | "hphantom" | "vphantom" | "ref" | "eqref"
-        | "cite" | "index" | "footnote" | "color" | "section" | "subsection" | "paragraph"
-        | "caption" | "mspace" | "cline" | "usepackage" | "documentclass" => 1,
+        "label" | "subsubsection" | "hspace" | "vspace" | "phantom" | "hphantom" | "vphantom"
+        | "ref" | "eqref" | "cite" | "index" | "footnote" | "color" | "section" | "subsection"
+        | "paragraph" | "caption" | "mspace" | "cline" | "usepackage" | "documentclass" => 1,
         "setlength" | "addtolength" | "rule" | "setcounter" => 2,
         _ => return None,
     })

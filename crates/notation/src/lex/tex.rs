@@ -86,9 +86,15 @@ impl Lexer<'_> {
         }
         if table::vanishes(name) {
             self.at += whole;
-            return self.gap.add(Gap::SPACE);
+            // the size of a bracket is no space before it
+            if !name.to_ascii_lowercase().starts_with("big") {
+                self.gap.add(Gap::SPACE);
+            }
+            return;
         }
         match name {
+            // how a character is set
+            "expandafter" => self.comment(),
             "left" => self.left(whole),
             "right" => self.right(whole),
             "hskip" | "kern" | "mkern" | "mskip" => {

@@ -30,6 +30,8 @@ pub(crate) enum Kind {
     NotIn,
     Subset,
     SubsetOrEqual,
+    Superset,
+    SupersetOrEqual,
     Congruent,
     Modulo,
     Union,
@@ -162,6 +164,8 @@ impl Kind {
                 | Self::NotIn
                 | Self::Subset
                 | Self::SubsetOrEqual
+                | Self::Superset
+                | Self::SupersetOrEqual
                 | Self::Congruent
         )
     }

@@ -132,8 +132,13 @@ impl Parser<'_> {
     /// Whether a name stands in a subscript, a superscript or the limits of a sum before `at`
     /// on this line, or is bound by its quantifier.
     fn is_index(&self, name: &str, at: usize) -> bool {
+        self.is_index_since(name, (self.first.max(at.saturating_sub(WINDOW)), at))
+    }
+
+    /// Whether a name stands in a subscript or a superscript between two tokens.
+    pub(super) fn is_index_since(&self, name: &str, (from, to): (usize, usize)) -> bool {
         let mut depth = 0_u32;
-        for i in self.first.max(at.saturating_sub(WINDOW))..at {
+        for i in from..to {
             let token = &self.tokens[i];
             let raised = i > 0 && matches!(self.tokens[i - 1].kind, T::Underscore | T::Caret);
             if token.kind == T::LeftBrace && (raised || depth > 0) {
@@ -263,7 +268,9 @@ fn bound<'e>(item: &'e Expression, names: &mut BTreeSet<&'e str>) {
         Kind::Name(name) if name.indices.is_empty() => {
             names.insert(&name.text);
         }
-        Kind::Tuple(items) | Kind::All(items) => items.iter().for_each(|i| bound(i, names)),
+        Kind::Tuple(items) | Kind::Set(items) | Kind::All(items) => {
+            items.iter().for_each(|i| bound(i, names));
+        }
         Kind::Chain(first, links) => {
             bound(first, names);
             let member = matches!(links.first(), Some((Relation::In, _)));

@@ -1,9 +1,10 @@
 //! Title, parts, and where each line ends.
 
-use super::{Parser, Surroundings};
+use super::{Parser, Surroundings, superset};
 use crate::diagnostic::syntax as message;
 use crate::latex::unescaped;
 use crate::lex::lex;
+use crate::lex::prose::PROSE;
 use crate::lex::token::{Gap, Kind as T};
 use crate::place::Span;
 use crate::syntax::{Expression, Formulation, Kind, Line, Objective, Section, Unread};
@@ -16,16 +17,27 @@ pub(super) fn title(text: &str) -> (Option<String>, usize) {
     let mut start = 0;
     for line in text.split_inclusive('\n') {
         let trimmed = line.trim();
-        if trimmed.is_empty() || trimmed.starts_with(['#', '%']) {
+        let told = trimmed.starts_with("\\expandafter");
+        if trimmed.is_empty() || trimmed.starts_with(['#', '%']) || told {
             start += line.len();
             continue;
         }
-        if unescaped(trimmed).len() > 400 || !is_title(trimmed) {
+        let title = heading(trimmed).unwrap_or(trimmed);
+        if unescaped(title).len() > 400 || title.is_empty() || !is_title(title) {
             return (None, start);
         }
-        return (Some(unescaped(trimmed)), start + line.len());
+        return (Some(unescaped(title)), start + line.len());
     }
     (None, 0)
+}
+
+/// What stands in `\\section*{…}`, `\\textbf{…}` and their like, if that is the whole line.
+fn heading(line: &str) -> Option<&str> {
+    let (command, rest) = line.strip_prefix('\\')?.split_once('{')?;
+    let inner = rest.strip_suffix('}').filter(|inner| !inner.contains(['{', '}']));
+    let known = "section subsection subsubsection paragraph title caption textbf textit emph";
+    let whole = known.split(' ').any(|one| one == command.trim_end_matches('*'));
+    inner.map(str::trim).filter(|_| whole)
 }
 
 /// Whether a line holds no relation, part word or TeX environment.
@@ -93,6 +105,9 @@ impl Parser<'_> {
         while self.at + 1 < self.tokens.len() {
             let before = self.at;
             self.end = self.tokens.len() - 1;
+            if self.passes_prose(&mut tree) {
+                continue;
+            }
             if let Some(next) = self.part_word(part) {
                 part = next;
             } else if matches!(self.peek(), T::Break | T::Comma | T::Period) {
@@ -112,6 +127,27 @@ impl Parser<'_> {
             debug_assert!(self.at > before, "the parser must move on");
         }
         tree
+    }
+
+    /// A sentence is told of and passed over; a definition in it is read.
+    fn passes_prose(&mut self, tree: &mut Formulation) -> bool {
+        let token = &self.tokens[self.at];
+        let (kind, span) = (token.kind, token.span);
+        if token.text != PROSE || !matches!(kind, T::Break | T::Definitions) {
+            return false;
+        }
+        self.bump();
+        if kind == T::Break {
+            let word = span.of(self.text).split_whitespace().next().map_or(0, str::len);
+            let end = span.start + u32::try_from(word).unwrap_or(0);
+            self.report(message::prose(Span { end, ..span }));
+        } else if self.declared.contains(&self.tokens[self.at].text) {
+            let rest = &self.tokens[self.at..];
+            self.at += rest.iter().position(|t| t.kind == T::Break).unwrap_or(rest.len() - 1);
+        } else {
+            self.line_of(Part::Definitions, tree);
+        }
+        true
     }
 
     /// `\\tag{P}` alone on a line numbers the whole display.
@@ -245,7 +281,9 @@ impl Parser<'_> {
                 let mut line = self.data_line().ok()?;
                 line.remark = self.remark(after);
                 self.note(&line);
-                tree.data.push(line);
+                if !superset::put(&mut tree.data, &line) {
+                    tree.data.push(line);
+                }
             }
             Part::Definitions => {
                 let mut line = self.data_line().ok()?;
@@ -410,6 +448,9 @@ impl Parser<'_> {
         if token.kind == T::Text {
             return true;
         }
+        if token.kind == T::Period {
+            return !wide && self.tokens[i + 1].gap.has(Gap::NEWLINE);
+        }
         if token.kind == T::Comma {
             let next = &self.tokens[i + 1];
             let after = self.tokens.get(i + 2).map_or(T::End, |t| t.kind);
@@ -417,6 +458,9 @@ impl Parser<'_> {
             return word && !matches!(after, T::Underscore | T::Comma) && !after.is_relation();
         }
         let wide = wide && token.gap.has(Gap::WIDE) && !token.gap.has(Gap::NEWLINE);
-        wide && !token.kind.continues() && !self.goes_on(i - 1)
+        let quantifier = token.kind == T::LeftParen
+            && self.tokens[i + 1].kind == T::Word
+            && self.is_index_since(&self.tokens[i + 1].text, (self.at, i));
+        wide && !quantifier && !token.kind.continues() && !self.goes_on(i - 1)
     }
 }

@@ -1,7 +1,7 @@
 //! Expressions by rising precedence: ∨, ∧, ¬, relations, `..`, `+ − ∪ ∖`, products, sign, power.
 
 use super::line::relation;
-use super::{Parser, Read};
+use super::{Parser, Read, Surroundings};
 use crate::lex::token::{Gap, Kind as T};
 use crate::syntax::{Additive, Expression, Kind, Multiplicative, Relation};
 
@@ -64,9 +64,14 @@ impl Parser<'_> {
             return self.congruence(first, start);
         }
         let mut links = Vec::new();
+        if let Some(turned) = self.turned() {
+            let whole = self.range()?;
+            links.push((turned, first));
+            return Ok(self.make(Kind::Chain(Box::new(whole), links), start));
+        }
         while let Some(relation) = relation(self.peek()) {
             self.bump();
-            links.push((relation, self.range()?));
+            links.push((relation, self.related(relation)?));
         }
         let first = match links.first() {
             Some((Relation::In, _)) => pair_of_edge(first),
@@ -83,6 +88,27 @@ impl Parser<'_> {
         self.bump();
         let parity = self.make(Kind::Parity(Box::new(first), odd), start);
         Ok(self.make(Kind::All(vec![chain, parity]), start))
+    }
+
+    /// `⊇` and `⊃`, which are read from right to left.
+    pub(super) fn turned(&mut self) -> Option<Relation> {
+        let relation = match self.peek() {
+            T::Superset => Relation::Subset,
+            T::SupersetOrEqual => Relation::SubsetOrEqual,
+            _ => return None,
+        };
+        self.bump();
+        Some(relation)
+    }
+
+    /// The operand behind a relation; behind ∈ and ⊆, `[n]` is `{1..n}`.
+    pub(super) fn related(&mut self, relation: Relation) -> Read<Expression> {
+        let sets = matches!(
+            relation,
+            Relation::In | Relation::NotIn | Relation::Subset | Relation::SubsetOrEqual
+        );
+        let place = Surroundings { counts: sets || self.place.counts, ..self.place };
+        self.within(place, Self::range)
     }
 
     fn clique(&mut self, first: Expression, start: crate::place::Span) -> Read<Expression> {
@@ -177,7 +203,7 @@ impl Parser<'_> {
     }
 
     /// Whether the next token begins a factor without an operator.
-    fn juxtaposed(&self) -> bool {
+    pub(super) fn juxtaposed(&self) -> bool {
         let gap = self.gap();
         if self.place.quad_ends && gap.has(Gap::QUAD) || self.place.wide_ends && gap.has(Gap::WIDE)
         {
@@ -226,8 +252,15 @@ impl Parser<'_> {
             return Err(self.expected("an operator, and no prime behind what is no name"));
         }
         if self.eat(T::Caret) {
+            // {0,1}^n, ℝ^{I × J}: how many there are is told by the indices
+            if matches!(base.kind, Kind::Set(_) | Kind::Interval(..) | Kind::NumberSet(_))
+                && self.peek() == T::LeftBrace
+                && let Some(close) = self.closing(self.at).filter(|close| *close < self.end)
+            {
+                self.at = close + 1;
+                return Ok(base);
+            }
             let exponent = self.grouped(Self::additive)?;
-            // {0,1}^n, ℝ^n: how many there are is told by the indices
             if matches!(base.kind, Kind::Set(_) | Kind::Interval(..) | Kind::NumberSet(_)) {
                 return Ok(base);
             }
@@ -237,11 +270,11 @@ impl Parser<'_> {
     }
 }
 
-/// `{i,j} ∈ E` is `(i,j) ∈ E`.
+/// `{i,j,k} ∈ H` is `(i,j,k) ∈ H`; of a pair either order may stand in the set.
 fn pair_of_edge(left: Expression) -> Expression {
     match left.kind {
         Kind::Set(items)
-            if items.len() > 1 && items.iter().all(|i| matches!(i.kind, Kind::Name(_))) =>
+            if items.len() > 2 && items.iter().all(|i| matches!(i.kind, Kind::Name(_))) =>
         {
             Expression { kind: Kind::Tuple(items), span: left.span }
         }

@@ -13,7 +13,8 @@ impl Parser<'_> {
     /// `c_{i,j} ≥ 0 ∀ (i,j) ∈ A`, `V`, `s, t ∈ V`.
     pub(super) fn data_line(&mut self) -> Read<Line> {
         let start = self.here();
-        let (left, links) = self.operands()?;
+        let place = super::Surroundings { counts: true, ..self.place };
+        let (left, links) = self.within(place, Self::operands)?;
         let clauses = self.clauses()?;
         if self.peek() != T::End {
             return Err(self.expected("a relation, a quantifier or two spaces before the remark"));
@@ -107,11 +108,21 @@ impl Parser<'_> {
     /// Operands and relations up to the quantifier.
     fn operands(&mut self) -> Read<(Vec<Expression>, Links)> {
         let mut left = vec![self.range()?];
-        while self.peek() == T::Comma && !self.ahead(1).continues() && self.ahead(1) != T::End {
+        while self.peek() == T::Comma
+            && !self.ahead(1).continues()
+            && self.ahead(1) != T::End
+            && !self.at_index_of_described()
+        {
             self.bump();
             left.push(self.range()?);
         }
         let mut links = Vec::new();
+        if left.len() == 1
+            && let Some(turned) = self.turned()
+        {
+            let whole = std::mem::replace(&mut left[0], self.range()?);
+            links.push((turned, whole));
+        }
         loop {
             let place = super::Surroundings { quad_ends: true, ..self.place };
             let link = self.within(place, Self::link)?;
@@ -122,6 +133,15 @@ impl Parser<'_> {
         }
     }
 
+    /// Whether behind a comma among the data an index of the name before is bound:
+    /// `p_{ij}, i ∈ I, j ∈ J`.
+    fn at_index_of_described(&self) -> bool {
+        let Some(next) = self.tokens.get(self.at + 1).filter(|_| self.place.counts) else {
+            return false;
+        };
+        next.kind == T::Word && self.is_index_since(&next.text, (self.first, self.at))
+    }
+
     /// A relation with its right operand; `free` is `∈ ℝ`.
     pub(super) fn link(&mut self) -> Read<Option<(Relation, Expression)>> {
         if let Some(domain) = self.domain_in_words() {
@@ -129,7 +149,7 @@ impl Parser<'_> {
         }
         let Some(relation) = relation(self.peek()) else { return Ok(None) };
         self.bump();
-        let operand = self.range()?;
+        let operand = self.related(relation)?;
         self.zero_or_one(relation, operand).map(Some)
     }
 

@@ -14,6 +14,7 @@ mod opening;
 mod plain_sum;
 mod primary;
 mod quantifier;
+mod superset;
 mod words;
 
 pub(crate) use compound::needed;
@@ -67,7 +68,7 @@ pub fn parse(text: &str) -> Parse {
     let mut tree = parser.document();
     tree.title = title;
     literal::joined(&mut tree);
-    tree.complete = parser.diagnostics.is_empty();
+    tree.complete = !parser.diagnostics.iter().any(Diagnostic::is_error);
     Parse { tree, diagnostics: tidy(parser.diagnostics) }
 }
 
@@ -93,6 +94,8 @@ struct Surroundings {
     wide_ends: bool,
     /// In a set: a bar separates, as a colon does.
     bar_separates: bool,
+    /// Behind ∈ or ⊆: `[n]` is `{1..n}`.
+    counts: bool,
     /// In a statement, outside brackets: another statement may follow on the line.
     splits: bool,
 }

@@ -113,8 +113,15 @@ impl Parser<'_> {
 
     fn interval(&mut self) -> Read<Expression> {
         let start = self.here();
+        let operand = self.at > 0 && wants_set(self.tokens[self.at - 1].kind);
         self.bump();
         let mut ends = self.bracketed(T::RightBracket, "“]”")?;
+        if let ([_], true) = (&ends[..], self.place.counts && operand && self.ends_set())
+            && let Some(last) = ends.pop()
+        {
+            let one = Expression { kind: Kind::Number(model::Number::ONE), span: start };
+            return Ok(self.make(Kind::Range(Box::new(one), Box::new(last)), start));
+        }
         match (ends.pop(), ends.pop(), ends.is_empty()) {
             (Some(b), Some(a), true) => {
                 Ok(self.make(Kind::Interval(Box::new(a), Box::new(b)), start))
@@ -125,6 +132,12 @@ impl Parser<'_> {
                 Err(self.report(message::expected(span, "two ends of an interval", "more")))
             }
         }
+    }
+
+    /// Whether a set may end here: what follows computes nothing with it.
+    fn ends_set(&self) -> bool {
+        let numbers = matches!(self.peek(), T::Plus | T::Minus | T::Dot | T::Slash | T::Caret);
+        !numbers && !self.juxtaposed()
     }
 
     fn bars(&mut self) -> Read<Expression> {
@@ -238,4 +251,10 @@ impl Parser<'_> {
         };
         Ok(self.make(Kind::NumberSet(set), start))
     }
+}
+
+/// Whether a set may stand behind a token of a membership.
+fn wants_set(kind: T) -> bool {
+    kind.is_relation()
+        || matches!(kind, T::Cross | T::Union | T::Intersection | T::Difference | T::LeftBrace)
 }

@@ -58,6 +58,17 @@ fn printed(report: &InstanceReport) -> String {
     out
 }
 
+/// A file as its user would have it: without the compression of RFC 1952 in which some are kept.
+fn unpacked(bytes: Vec<u8>) -> Vec<u8> {
+    if !bytes.starts_with(&[0x1f, 0x8b]) {
+        return bytes;
+    }
+    let name = bytes[3] & 8 != 0;
+    let end = bytes[10..].iter().position(|byte| *byte == 0).expect("a name that ends");
+    let start = if name { 11 + end } else { 10 };
+    miniz_oxide::inflate::decompress_to_vec(&bytes[start..]).expect("a sound file")
+}
+
 /// The reports of a folder's files, by name.
 fn reports(folder: &Path) -> String {
     let mut files: Vec<PathBuf> = fs::read_dir(folder)
@@ -68,7 +79,7 @@ fn reports(folder: &Path) -> String {
     files.sort();
     let mut out = String::new();
     for file in files {
-        let bytes = fs::read(&file).expect("a file");
+        let bytes = unpacked(fs::read(&file).expect("a file"));
         let name = file.file_name().and_then(|name| name.to_str()).expect("a name");
         write!(out, "== {name}\n{}", report(&String::from_utf8_lossy(&bytes))).expect("a string");
     }

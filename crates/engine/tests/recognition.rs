@@ -112,8 +112,16 @@ fn capacities() {
     all(
         "",
         &[
-            ("x(δ⁺(S)) ≥ (Σ_{i ∈ S} d_i) / Q  ∀ S ⊆ V : S ≠ ∅, r ∉ S", "exact closure: minimum cut with node weights", EXACT),
-            ("y(δ(S)) ≥ 2 (Σ_{i ∈ S} d_i) / Q  ∀ S ⊆ V : S ≠ ∅, r ∉ S", "exact closure: minimum cut with node weights", EXACT),
+            (
+                "x(δ⁺(S)) ≥ (Σ_{i ∈ S} d_i) / Q  ∀ S ⊆ V : S ≠ ∅, r ∉ S",
+                "exact closure: minimum cut with node weights",
+                EXACT,
+            ),
+            (
+                "y(δ(S)) ≥ 2 (Σ_{i ∈ S} d_i) / Q  ∀ S ⊆ V : S ≠ ∅, r ∉ S",
+                "exact closure: minimum cut with node weights",
+                EXACT,
+            ),
             (
                 "x(δ⁺(S)) ≥ ⌈(Σ_{i ∈ S} d_i) / Q⌉  ∀ S ⊆ V : S ≠ ∅, r ∉ S",
                 "heuristic: greedy growth",

@@ -4,7 +4,8 @@ use std::io::{Result, Write};
 
 use engine::LogAudit;
 use engine::native::USUAL_SLICE;
-use record::results::{AuditReport, Judgement};
+use record::event::Log;
+use record::results::{AuditReport, ErrorReport, Judgement};
 use report::audit::sentences;
 
 use crate::complain::complain;
@@ -32,25 +33,30 @@ pub(crate) fn prove(
         let (made, now) = (&log.engine, engine::VERSION);
         writeln!(err, "{file}: the log is of engine {made}; this is engine {now}")?;
     }
-    let mut audit = match LogAudit::new(&log) {
-        Ok(audit) => audit,
+    let found = match proved(log) {
+        Ok(found) => found,
         Err(error) => {
             complain(err, file, None, &error.complaints)?;
             return writeln!(err, "{file}: {}", error.message).map(|()| Ending::Wrong);
         }
     };
-    while !audit.advance(USUAL_SLICE) {}
-    let found = audit.report();
     if options.json {
         serde_json::to_writer(&mut *out, &found)?;
         writeln!(out)?;
     } else {
-        writeln!(out, "{}: {} nodes", audit.title(), found.nodes)?;
+        writeln!(out, "{}: {} nodes", found.title, found.nodes)?;
         for sentence in sentences(&found) {
             writeln!(out, "{sentence}")?;
         }
     }
     Ok(ending(&found))
+}
+
+/// What comes of a log.
+fn proved(log: Log) -> Result<AuditReport, ErrorReport> {
+    let mut audit = LogAudit::new(log)?;
+    while !audit.advance(USUAL_SLICE)? {}
+    Ok(audit.report())
 }
 
 fn ending(found: &AuditReport) -> Ending {

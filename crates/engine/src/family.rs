@@ -7,12 +7,15 @@
 //! 1963, Management Science 9; Teitz, Bart 1968, Operations Research 16). Where only places cost it
 //! is packing: first fit, largest first (Johnson 1974, Journal of Computer and System Sciences 8).
 //! Where the columns that are opened are what balances `s + x − s' = d` take in, it is lot sizing:
-//! the dynamic program of Wagner, Whitin 1958 (Management Science 5), one item at a time.
+//! the dynamic program of Wagner, Whitin 1958 (Management Science 5), one item at a time. Work on
+//! machines is [`crate::dispatch`]'s.
 
 use std::collections::{BTreeMap, BTreeSet};
 
 use model::{ColumnId, Model, RowId, Sense};
 use tree::{SuggestedBy, Suggestion};
+
+use crate::dispatch::dispatched;
 
 /// Sums that location and packing look at, at most.
 const MOST_WORK: usize = 20_000_000;
@@ -42,13 +45,15 @@ pub(crate) fn suggestions(model: &Model) -> Vec<Suggestion> {
         return Vec::new();
     }
     let shape = Shape::read(model);
-    if shape.places.is_empty() {
-        return Vec::new();
-    }
+    let placed = !shape.places.is_empty();
     let all = [
-        shape.location(model).map(|values| ("greedy location with interchange", values)),
-        shape.packing(model).map(|values| ("first fit, largest first", values)),
-        shape.lots(model).map(|values| ("Wagner-Whitin", values)),
+        placed
+            .then(|| shape.location(model))
+            .flatten()
+            .map(|v| ("greedy location with interchange", v)),
+        placed.then(|| shape.packing(model)).flatten().map(|v| ("first fit, largest first", v)),
+        placed.then(|| shape.lots(model)).flatten().map(|v| ("Wagner-Whitin", v)),
+        dispatched(model).map(|v| ("dispatch rules", v)),
     ];
     let of = |(name, values)| Suggestion { origin: SuggestedBy::Heuristic(name), values };
     all.into_iter().flatten().map(of).collect()

@@ -20,6 +20,7 @@ mod audit;
 mod bindings;
 mod check;
 mod digest;
+mod dispatch;
 mod explain;
 mod family;
 mod fault;

@@ -163,14 +163,25 @@ pub(crate) fn load(
     scenario: &Scenario,
     (instance, rival): (usize, usize),
 ) -> Result<Loaded, ErrorReport> {
+    let job = job(scenario, (instance, rival))?;
+    let mut loading = Loading::begin(&mut Readings::default(), &job)?;
+    while loading.advance(1_000_000) {}
+    loading.finish()
+}
+
+/// What a worker is asked to load for a rival on an instance, both by place.
+///
+/// # Errors
+/// The scenario has no such rival.
+pub(crate) fn job(
+    scenario: &Scenario,
+    (instance, rival): (usize, usize),
+) -> Result<LaneJob, ErrorReport> {
     let Some(rival) = scenario.rivals.get(rival) else {
         return Err(fault("scenario", "the scenario has no such rival"));
     };
     let instance = scenario.instances().nth(instance).cloned();
-    let job = LaneJob { instance, rival: rival.clone(), ..LaneJob::default() };
-    let mut loading = Loading::begin(&mut Readings::default(), &job)?;
-    while loading.advance(1_000_000) {}
-    loading.finish()
+    Ok(LaneJob { instance, rival: rival.clone(), ..LaneJob::default() })
 }
 
 /// A rival in MPS, which needs no instance; `stops` are those of the instance, for the map.

@@ -185,6 +185,7 @@ fn refusal(acted: &Acted) -> Option<String> {
         ActKind::Close => "close",
         ActKind::Cut => "cut",
         ActKind::Stop => "stop",
+        ActKind::Rule => "rule",
     };
     let at = node.map_or_else(String::new, |node| format!(" at node {node}"));
     let on = if on.is_empty() { String::new() } else { format!(" on {}", on.join(", ")) };

@@ -5,6 +5,7 @@ use std::collections::VecDeque;
 use record::message::{Envelope, Progress, Reply, Request, RunNumber, StudyJob};
 use record::wire::{read_request, write_envelope};
 
+use crate::audit::LogAudit;
 use crate::bindings::bindings;
 use crate::check::check;
 use crate::explain::explanation;
@@ -24,6 +25,7 @@ pub struct Worker {
     readings: Readings,
     lane: Option<Lane>,
     study: Option<StudyRun>,
+    proof: Option<Box<LogAudit>>,
     run: RunNumber,
     outbox: Outbox,
 }
@@ -58,8 +60,12 @@ impl Worker {
             lane.advance(ticks, &mut self.readings, &mut self.outbox);
         } else if self.study.is_some() {
             self.go_on_studying(ticks);
+        } else if self.proof.is_some() {
+            self.go_on_proving(ticks);
         }
-        let busy = self.study.is_some() || self.lane.as_ref().is_some_and(Lane::is_busy);
+        let busy = self.study.is_some()
+            || self.proof.is_some()
+            || self.lane.as_ref().is_some_and(Lane::is_busy);
         busy || !self.requests.is_empty()
     }
 
@@ -107,8 +113,10 @@ impl Worker {
             Request::List => self.reply(Reply::Catalogue(catalogue_entries())),
             Request::Load(job) => {
                 self.run = job.run;
-                (self.lane, self.study) = (Some(Lane::new(*job)), None);
+                (self.lane, self.study, self.proof) = (Some(Lane::new(*job)), None, None);
             }
+            Request::Prove(bytes) => self.begin_proof(&bytes),
+            Request::Stop if self.proof.is_some() => self.end_proof(),
             Request::Study(job) => self.begin_study(&job),
             Request::Run { .. }
             | Request::Pause
@@ -126,7 +134,7 @@ impl Worker {
 
     fn begin_study(&mut self, job: &StudyJob) {
         self.run = job.run;
-        (self.lane, self.study) = (None, None);
+        (self.lane, self.study, self.proof) = (None, None, None);
         let scenario = record::file::parse(&job.scenario).scenario;
         let study = scenario.as_ref().and_then(|scenario| scenario.studies.first());
         match (&scenario, study) {
@@ -149,6 +157,37 @@ impl Worker {
             Reply::Progress(Progress { doing, ticks: study.ticks(), iterations: 0 })
         };
         self.reply(reply);
+    }
+
+    fn begin_proof(&mut self, bytes: &[u8]) {
+        (self.lane, self.study, self.proof) = (None, None, None);
+        let log = record::log::decode(bytes).map_err(|error| fault("log", error.to_string()));
+        match log.and_then(LogAudit::new) {
+            Ok(proof) => self.proof = Some(Box::new(proof)),
+            Err(error) => self.reply(Reply::Failed(error)),
+        }
+    }
+
+    fn go_on_proving(&mut self, ticks: u64) {
+        let Some(proof) = &mut self.proof else { return };
+        match proof.advance(ticks) {
+            Ok(true) => self.end_proof(),
+            Ok(false) => {
+                let (doing, ticks) = (proof.doing(), proof.ticks());
+                self.reply(Reply::Progress(Progress { doing, ticks, iterations: 0 }));
+            }
+            Err(error) => {
+                self.proof = None;
+                self.reply(Reply::Failed(error));
+            }
+        }
+    }
+
+    /// Says what was proved, as far as it came.
+    fn end_proof(&mut self) {
+        if let Some(proof) = self.proof.take() {
+            self.reply(Reply::Audited(Box::new(proof.report())));
+        }
     }
 
     fn reply(&mut self, reply: Reply) {

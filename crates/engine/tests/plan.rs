@@ -103,6 +103,8 @@ fn textbook_methods_find_plans_where_they_fit() {
         ("libraries", "greedy location with interchange"),
         ("lots", "Wagner-Whitin"),
         ("rolls", "first fit, largest first"),
+        ("one-crane", "dispatch rules"),
+        ("three-benches", "dispatch rules"),
     ];
     for (name, method) in expected {
         let path = format!("{}/../../scenarios/{name}.toml", env!("CARGO_MANIFEST_DIR"));

@@ -318,3 +318,46 @@ fn what_is_not_solved_is_not_handed_over() {
     });
     assert_eq!(said, Some(Err("the root is not solved".to_owned())));
 }
+
+/// A log as the command saves it.
+fn saved() -> Vec<u8> {
+    let rival = Rival { from: Some("atsp/labels".to_owned()), ..Rival::default() };
+    let instance = InstanceText { text: MATRIX.to_owned(), ..InstanceText::default() };
+    let scenario = record::scenario::Scenario {
+        instance: Some(instance),
+        rivals: vec![rival],
+        ..Default::default()
+    };
+    let run = run_rival(&scenario, (0, 0), 500, &mut |_| Watch::GoOn);
+    let ground = run.evidence.map(|evidence| record::ground::Ground {
+        scenario: file::print(&scenario),
+        evidence,
+        ..Default::default()
+    });
+    let version = record::log::version(ground.as_ref());
+    let engine = engine::VERSION.to_owned();
+    let log = record::event::Log { version, engine, events: run.events, ground };
+    record::log::encode(&log).expect("a log")
+}
+
+#[test]
+fn a_saved_log_is_proved_by_a_worker_that_did_not_run_it() {
+    use record::results::Judgement;
+    let bytes = saved();
+    let mut worker = Worker::new();
+    let found = replies(&mut worker, vec![Request::Prove(bytes.clone())]);
+    let [Reply::Audited(found)] = found.as_slice() else { panic!("{found:?}") };
+    assert_eq!((found.judgement, found.value.as_deref()), (Judgement::Proved, Some("15")));
+    assert!(!found.title.is_empty());
+    // Stop ends it at once with what it found.
+    worker.handle(Request::Prove(bytes.clone()));
+    for _ in 0..6 {
+        worker.advance(1);
+    }
+    let stopped = replies(&mut worker, vec![Request::Stop]);
+    let [Reply::Audited(stopped)] = stopped.as_slice() else { panic!("{stopped:?}") };
+    assert_eq!(stopped.judgement, Judgement::Open);
+    assert!(stopped.leaves < found.leaves, "{stopped:?}");
+    let damaged = bytes[..bytes.len() - 3].to_vec();
+    assert!(failure(vec![Request::Prove(damaged)]).message.contains("cut short"));
+}

@@ -21,6 +21,12 @@ use crate::hash;
 
 const HEAD: &[u8; 9] = b"hullwardL";
 
+/// Whether a file's bytes begin as a log does.
+#[must_use]
+pub fn looks_like_a_log(bytes: &[u8]) -> bool {
+    bytes.starts_with(HEAD)
+}
+
 /// The longest log, in bytes: 256 MiB.
 pub const LONGEST_LOG: usize = 256 << 20;
 

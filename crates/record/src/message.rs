@@ -67,6 +67,9 @@ pub enum Request {
     /// Prove a search that has ended again, from its branchings. Answered by [`Reply::Progress`]
     /// and [`Reply::Audited`].
     Audit,
+    /// Prove a saved log, given as the bytes of its file, in place of what the worker holds. Answered
+    /// by [`Reply::Progress`] and [`Reply::Audited`]; [`Request::Stop`] ends it with what it found.
+    Prove(Vec<u8>),
 }
 
 /// A rival to load.

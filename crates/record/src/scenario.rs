@@ -142,7 +142,8 @@ pub struct Act {
     /// The node it was done to.
     pub node: Option<u32>,
     /// What it was done on. A branching: the variable and its indices. A cut: the family, its
-    /// outer index tuple where it has one, and the labels of the set.
+    /// outer index tuple where it has one, and the labels of the set. A rule: its name in `[run]`
+    /// (`branching`, `selection`, `nodes` or `iterations`) and its value there.
     pub on: Vec<String>,
 }
 
@@ -157,6 +158,8 @@ pub enum ActKind {
     Cut,
     /// Stop the search.
     Stop,
+    /// Change a rule or a limit from here on.
+    Rule,
 }
 
 /// Where the rows of a family stand.

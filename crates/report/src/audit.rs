@@ -57,6 +57,9 @@ fn whole(found: &AuditReport) -> String {
             let places = of(found.faults.len() as u64, "place");
             format!("Refused: the log is wrong in {places}.")
         }
+        (Judgement::Open, _) if found.open.is_empty() => {
+            format!("Stopped, so this is no proof: {leaves} proved until then.")
+        }
         (Judgement::Open, _) => {
             let open = count(found.open.len() as u64);
             format!("Not a proof: {leaves} proved, {open} open.")
@@ -116,6 +119,11 @@ mod tests {
 
     #[test]
     fn a_value_that_was_given_is_not_called_a_plan() {
+        let stopped = AuditReport { leaves: 1, ..AuditReport::default() };
+        assert_eq!(
+            sentences(&stopped),
+            ["Stopped, so this is no proof: 1 leaf proved until then."]
+        );
         let proved = AuditReport {
             judgement: Judgement::Proved,
             given: true,

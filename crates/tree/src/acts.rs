@@ -13,6 +13,7 @@
 //! | branch | `column ≤ v` and `column ≥ v + 1` hold every whole value between them |
 //! | close | the bound of each node closed stays in the bound of the whole tree |
 //! | cut | a member of a family on demand, which is part of the model's meaning |
+//! | rule | any column and any open node may come next; a limit ends the search as it stands |
 //! | stop | the search ends as it stands |
 
 use std::collections::{BTreeMap, BTreeSet, VecDeque};
@@ -24,6 +25,7 @@ use model::{ColumnId, FamilyState, LabelId, SubsetFamilyId};
 use crate::branching::split;
 use crate::event::{Event, NodeId, NodeState};
 use crate::relaxation::{Addition, RowOrigin, float_bounds};
+use crate::rules::Rule;
 use crate::search::{Ending, Opening, Search, State};
 
 /// What a person does to a search.
@@ -50,6 +52,8 @@ pub enum Act {
         /// The subset whose member it is.
         subset: BTreeSet<LabelId>,
     },
+    /// Let a rule or a limit hold from now on; in the same place as a stop.
+    Rule(Rule),
     /// End the search after the node in hand; as the first node after the root is branched on
     /// at the earliest, unless it comes before that.
     Stop,
@@ -251,6 +255,8 @@ impl Search {
         match waiting.act {
             Act::Cut { .. } | Act::Branch { node: NodeId::ROOT, .. } => false,
             Act::Stop => branched && self.ledger.nodes <= 1,
+            // A root that waits for a person is not branched on yet.
+            Act::Rule(_) => branched && self.ledger.nodes <= 1 && !self.holding.holds(NodeId::ROOT),
             Act::Branch { .. } | Act::Close { .. } => !branched && waiting.after.is_some(),
         }
     }
@@ -263,6 +269,10 @@ impl Search {
             Act::Branch { node, column } => self.branch_by_hand(*node, *column),
             Act::Close { node } => self.close_by_hand(*node),
             Act::Cut { family, subset } => self.cut_by_hand(*family, subset),
+            Act::Rule(rule) => {
+                self.change(*rule);
+                Ok(())
+            }
             Act::Stop => {
                 self.end(Ending::Stopped("stopped by hand".to_owned()));
                 Ok(())

@@ -10,18 +10,25 @@ use std::collections::BTreeMap;
 use model::ColumnId;
 
 use crate::acts::Refusal;
-use crate::branching::split;
+use crate::branching::{Choice, split};
 use crate::event::{NodeId, NodeState};
 use crate::search::Search;
 use crate::settings::Branching;
 
 /// A node that waits for its column.
 #[derive(Debug)]
-struct Held {
+pub(crate) struct Held {
     /// Its relaxation's point.
     x: Vec<f64>,
     /// The bound that its children inherit.
     bound: f64,
+}
+
+impl Held {
+    /// Its relaxation's point.
+    pub(crate) fn x(&self) -> &[f64] {
+        &self.x
+    }
 }
 
 /// The nodes that wait.
@@ -34,6 +41,16 @@ impl Holding {
     /// Whether a node waits for its column.
     pub(crate) fn holds(&self, node: NodeId) -> bool {
         self.nodes.contains_key(&node)
+    }
+
+    /// Takes all out, in rising order of their numbers.
+    pub(crate) fn take_all(&mut self) -> Vec<(NodeId, Held)> {
+        std::mem::take(&mut self.nodes).into_iter().collect()
+    }
+
+    /// Lets a node wait again.
+    pub(crate) fn put_back(&mut self, node: NodeId, held: Held) {
+        self.nodes.insert(node, held);
     }
 }
 
@@ -62,10 +79,15 @@ impl Search {
         let bounds = self.bounds_at(node, column);
         let choice = split(column, held.x[column.index()], bounds).ok_or(Refusal::Fixed(node))?;
         let Some(held) = self.holding.nodes.remove(&node) else { return Ok(false) };
+        self.branch_held(node, &held, &choice);
+        Ok(true)
+    }
+
+    /// Branches on a node that waited.
+    pub(crate) fn branch_held(&mut self, node: NodeId, held: &Held, choice: &Choice) {
         self.open.remove(node, self.tree.node(node).bound);
         self.tree.node_mut(node).state = NodeState::Branched;
-        self.branch(node, held.bound, &choice, &held.x);
+        self.branch(node, held.bound, choice, &held.x);
         self.announce();
-        Ok(true)
     }
 }

@@ -36,6 +36,7 @@
 //! | [`Settings`] | rules and limits |
 //! | [`Search`] | running: `advance`, `run`, `pause`, `stop`; steering: `act`, `replay` |
 //! | [`Act`], [`Acted`], [`Refusal`] | branching, closing, cutting and stopping by hand |
+//! | [`Rule`] | rules and limits changed during a run |
 //! | [`Heuristics`], [`Suggestion`] | how plans are looked for; values from which one may be made |
 //! | [`RootResult`], [`Summary`] | what came out |
 //! | [`Measures`], [`Estimate`], [`Diagnosis`] | how the tree grew, how large it will be, what it suffers from |
@@ -95,6 +96,7 @@ mod relaxation;
 mod root;
 mod round_trip;
 mod rounds;
+mod rules;
 mod search;
 mod settings;
 mod solution;
@@ -118,6 +120,7 @@ pub use inspect::{NodeView, ViolatedSubset};
 pub use measures::{Estimate, Gains, Leaves, Measures};
 pub use proving::standings;
 pub use root::{RootResult, Status};
+pub use rules::Rule;
 pub use search::{Progress, Search, Work};
 pub use separate::general::{Class, Classes, Derivation, GeneralCut};
 pub use settings::{Branching, Cuts, NodeWork, Selection, Settings};

@@ -188,7 +188,7 @@ impl LaneRun {
             Reply::Audited(found) => {
                 let words = sentences(&found).join(" ");
                 let proved = found.judgement == Judgement::Proved;
-                Some(if proved { LaneAction::Proved(words) } else { LaneAction::Notice(words) })
+                Some(if proved { LaneAction::Proved(words) } else { LaneAction::Unproved(words) })
             }
             Reply::Relaxation(Err(why)) => Some(LaneAction::Second(Opinion::Silent(why))),
             Reply::Checked(_)

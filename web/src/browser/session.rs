@@ -244,7 +244,14 @@ impl Session {
         if let Some(lane) = self.0.borrow().lanes.get(&id) {
             lane.post(&Request::Audit);
         }
-        self.tell(id, LaneAction::Notice("Proving every leaf again…".to_owned()));
+        self.tell(id, LaneAction::Proving);
+    }
+
+    /// Ends that; what was proved until then is said.
+    pub(crate) fn stop_proving(&self, id: LaneId) {
+        if let Some(lane) = self.0.borrow().lanes.get(&id) {
+            lane.post(&Request::Stop);
+        }
     }
 
     /// Lets the search stand still.

@@ -89,8 +89,12 @@ pub(crate) enum LaneAction {
     Failed(ErrorReport),
     /// Something happened to the worker.
     Notice(String),
+    /// The ended search is being proved once more.
+    Proving,
     /// The ended search was proved once more.
     Proved(String),
+    /// That did not come to its end, or something is wrong.
+    Unproved(String),
 }
 
 impl Reducible for Board {
@@ -242,9 +246,11 @@ impl Lane {
                 self.phase = Phase::Failed;
             }
             LaneAction::Notice(notice) => self.notice = notice,
-            LaneAction::Proved(sentence) => {
-                (self.proved, self.notice) = (sentence, String::new());
+            LaneAction::Proving => {
+                (self.proving, self.proved, self.notice) = (true, String::new(), String::new());
             }
+            LaneAction::Proved(sentence) => (self.proving, self.proved) = (false, sentence),
+            LaneAction::Unproved(sentence) => (self.proving, self.notice) = (false, sentence),
         }
     }
 

@@ -83,6 +83,8 @@ pub(crate) struct Lane {
     pub(crate) error: Option<Shared<ErrorReport>>,
     /// What happened to the worker, as a sentence; empty when nothing did.
     pub(crate) notice: String,
+    /// Whether the ended search is being proved once more.
+    pub(crate) proving: bool,
     /// That the ended search was proved once more, as a sentence; empty when it was not.
     pub(crate) proved: String,
 }

@@ -107,8 +107,22 @@ pub(crate) fn act_words(act: &Act, columns: &[String]) -> String {
             None => "added a row".to_owned(),
         },
         ActKind::Stop => "stopped".to_owned(),
+        ActKind::Rule => match act.on.as_slice() {
+            [name, value] => format!("{}: {value}", rule_name(name)),
+            _ => "a rule".to_owned(),
+        },
     };
     format!("after {}: {done}", of(u64::from(act.after), "node"))
+}
+
+/// A rule by the name that the page has for it.
+fn rule_name(name: &str) -> &str {
+    match name {
+        "selection" => "next node",
+        "nodes" => "nodes at most",
+        "iterations" => "iterations at most",
+        name => name,
+    }
 }
 
 /// The column that an act names, as the model writes it where it has such a column.
@@ -205,6 +219,11 @@ mod tests {
         assert_eq!(words(ActKind::Branch, &[]), "after 12 nodes: branched node 9 on x[Ash, Birch]");
         assert_eq!(words(ActKind::Cut, &[]), "after 12 nodes: added x of Ash, Birch");
         assert_eq!(act_words(&act(1, ActKind::Stop), &[]), "after 1 node: stopped");
+        let rule = Act {
+            on: vec!["selection".to_owned(), "depth first".to_owned()],
+            ..act(12, ActKind::Rule)
+        };
+        assert_eq!(act_words(&rule, &[]), "after 12 nodes: next node: depth first");
         assert!(words(ActKind::Close, &[]).ends_with("closed the subtree of node 9"));
     }
 }

@@ -10,6 +10,7 @@ use crate::state::lane::{Lane, Phase};
 /// How a run stands, in a sentence without a stop.
 pub(crate) fn status(lane: &Lane) -> String {
     match lane.phase {
+        _ if lane.proving => loading(lane),
         Phase::Idle => "waits for an instance".to_owned(),
         Phase::Loading => loading(lane),
         Phase::Ready => ready(lane.root.as_deref()),

@@ -18,6 +18,7 @@ use crate::state::pointer::Shared;
 use crate::state::steer::{Steer, is_stopped};
 use crate::state::words::{advice, sentence, status};
 use crate::view::acts::Acts;
+use crate::view::change::change;
 use crate::view::drawing::Drawing;
 use crate::view::editor::{Editor, toggle};
 use crate::view::families::Families;
@@ -91,6 +92,9 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 if let Some(error) = &props.lane.error { { failure(error) } }
                 if let Some(hands) = &hands { { buttons(props, hands) } }
                 <div class="acts more">
+                    if let Some(hands) = hands.as_ref().filter(|_| may_change(&props.lane)) {
+                        { change(props.slot.id, &props.letter, hands) }
+                    }
                     if props.draft.is_some() { { toggle(props.slot.id, &props.letter, &writing) } }
                     { take_away(props) }
                 </div>
@@ -203,9 +207,13 @@ fn buttons(props: &LaneProps, hands: &Hands) -> Html {
             { button("Run", phase.can_go_on() || (!over && matches!(phase, Phase::Done | Phase::Failed)), act(run)) }
             { button("Pause", phase == Phase::Running, act(|hands, at| hands.session.pause(at.lane))) }
             { button("Step", phase.can_go_on(), act(|hands, at| hands.session.search(at.lane, Some(1)))) }
-            { button("Stop", phase.can_stop(), act(|hands, at| hands.session.stop(at.lane))) }
+            if props.lane.proving {
+                { button("Stop", true, act(|hands, at| hands.session.stop_proving(at.lane))) }
+            } else {
+                { button("Stop", phase.can_stop(), act(|hands, at| hands.session.stop(at.lane))) }
+            }
             if over && props.lane.nodes() > 0 {
-                { button("Prove", true, act(|hands, at| hands.session.prove(at.lane))) }
+                { button("Prove", !props.lane.proving, act(|hands, at| hands.session.prove(at.lane))) }
             }
         </div>
     }
@@ -216,6 +224,11 @@ pub(crate) fn is_over(lane: &Lane) -> bool {
     use record::results::Status;
     let ended = |status: Status| !matches!(status, Status::Limit | Status::Error);
     lane.phase == Phase::Done && lane.search.as_ref().is_some_and(|search| ended(search.status))
+}
+
+/// Whether rules may be changed: the search has begun or may begin, and has not ended.
+fn may_change(lane: &Lane) -> bool {
+    matches!(lane.phase, Phase::Ready | Phase::Running | Phase::Pausing | Phase::Paused)
 }
 
 fn drawing(props: &LaneProps, hands: &Hands) -> Html {

@@ -7,6 +7,7 @@ pub(crate) mod axis;
 mod bars;
 mod bindings;
 pub(crate) mod canvas;
+mod change;
 mod checking;
 pub(crate) mod complaints;
 mod drawing;

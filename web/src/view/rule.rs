@@ -1,6 +1,7 @@
 //! The rules of all rivals: which variable a node is branched on, and which open node comes next.
 
-use record::scenario::{BranchingRule, Preset, Run, Selection};
+use record::file::{BRANCHING, SELECTION};
+use record::scenario::{Preset, Run};
 use web_sys::{HtmlSelectElement, HtmlTextAreaElement};
 use yew::prelude::*;
 
@@ -8,35 +9,19 @@ use crate::state::document::DocumentAction;
 use crate::state::steer::Steer;
 use crate::view::hands::Hands;
 
-/// The rules that are offered, each with a word for people.
-const RULES: [(BranchingRule, &str); 5] = [
-    (BranchingRule::MostFractional, "most fractional"),
-    (BranchingRule::Pseudocost, "pseudocost"),
-    (BranchingRule::Strong, "strong"),
-    (BranchingRule::Reliability, "reliability"),
-    (BranchingRule::ByHand, "by hand"),
-];
-
-/// The rules for the next node.
-const NEXT: [(Selection, &str); 3] = [
-    (Selection::BestBound, "best bound"),
-    (Selection::DepthFirst, "depth first"),
-    (Selection::BestEstimate, "best estimate"),
-];
-
 /// The settings that go together.
-const PRESETS: [(Preset, &str); 2] =
-    [(Preset::Bare, "bare"), (Preset::Production, "as a production solver would")];
+const PRESETS: [(&str, Preset); 2] =
+    [("bare", Preset::Bare), ("as a production solver would", Preset::Production)];
 
 /// The choices of a run.
 pub(crate) fn rules(run: &Run, hands: &Hands) -> Html {
-    let own = PRESETS.iter().all(|(_, words)| *words != run.mode());
+    let own = PRESETS.iter().all(|(words, _)| *words != run.mode());
     let settings = if own { "settings, changed" } else { "settings" };
     html! {
         <>
             { choice((settings, "preset"), &PRESETS, run.preset, Steer::Preset, hands) }
-            { choice(("branching", "rule"), &RULES, run.branching, Steer::Rule, hands) }
-            { choice(("next node", "next"), &NEXT, run.selection, Steer::Next, hands) }
+            { choice(("branching", "rule"), &BRANCHING, run.branching, Steer::Rule, hands) }
+            { choice(("next node", "next"), &SELECTION, run.selection, Steer::Next, hands) }
         </>
     }
 }
@@ -59,7 +44,7 @@ pub(crate) fn plan(text: Option<&String>, hands: &Hands) -> Html {
 /// One choice, with its name and the mark that tests find it by.
 fn choice<T: Copy + PartialEq + 'static>(
     (name, mark): (&'static str, &'static str),
-    known: &'static [(T, &'static str)],
+    known: &'static [(&'static str, T)],
     used: T,
     steer: fn(T) -> Steer,
     hands: &Hands,
@@ -67,7 +52,7 @@ fn choice<T: Copy + PartialEq + 'static>(
     let document = hands.document.clone();
     let onchange = Callback::from(move |event: Event| {
         let select: HtmlSelectElement = event.target_unchecked_into();
-        if let Some((rule, _)) = known.iter().find(|(_, words)| *words == select.value()) {
+        if let Some((_, rule)) = known.iter().find(|(words, _)| *words == select.value()) {
             document.dispatch(DocumentAction::Steer(steer(*rule)));
         }
     });
@@ -75,7 +60,7 @@ fn choice<T: Copy + PartialEq + 'static>(
         <label class="family" title="Another rule searches every rival anew.">
             { name }
             <select data-testid={mark} {onchange}>
-                for (rule, words) in known {
+                for (words, rule) in known {
                     <option value={*words} selected={*rule == used}>{ *words }</option>
                 }
             </select>

@@ -3,8 +3,12 @@
 use std::collections::BTreeSet;
 
 use model::{ColumnId, LabelId, Model, SubsetFamilyId};
+use record::file::{BRANCHING, SELECTION};
 use record::message::Acted;
 use record::scenario::{Act, ActKind};
+use tree::Rule;
+
+use super::settings;
 
 /// The act on the places of a model; else why there are none, as a clause.
 pub(crate) fn act_of(model: &Model, act: &Act) -> Result<tree::Act, String> {
@@ -22,7 +26,49 @@ pub(crate) fn act_of(model: &Model, act: &Act) -> Result<tree::Act, String> {
         ActKind::Close => Ok(tree::Act::Close { node: node(act)? }),
         ActKind::Cut => cut(model, &act.on),
         ActKind::Stop => Ok(tree::Act::Stop),
+        ActKind::Rule => rule(&act.on).map(tree::Act::Rule),
     }
+}
+
+/// A rule or a limit by its name in `[run]` and its value there; a limit of 0 is none.
+fn rule(on: &[String]) -> Result<Rule, String> {
+    let [name, value] = on else { return Err("it names no rule and its value".to_owned()) };
+    let limit = || value.parse::<u32>().map_err(|_| format!("{value} is no limit"));
+    match name.as_str() {
+        "branching" => find(&BRANCHING, value).map(settings::branching).map(Rule::Branching),
+        "selection" => find(&SELECTION, value).map(settings::selection).map(Rule::Selection),
+        "nodes" => limit().map(|most| Rule::Nodes((most > 0).then_some(most))),
+        "iterations" => limit().map(|most| Rule::Iterations((most > 0).then_some(u64::from(most)))),
+        _ => Err(format!(
+            "{name} is no rule that can be changed: branching, selection, nodes, iterations"
+        )),
+    }
+}
+
+fn find<T: Copy>(words: &[(&str, T)], value: &str) -> Result<T, String> {
+    let found = words.iter().find(|(word, _)| *word == value);
+    found.map(|(_, rule)| *rule).ok_or_else(|| {
+        let known: Vec<&str> = words.iter().map(|(word, _)| *word).collect();
+        format!("{value} is none of {}", known.join(", "))
+    })
+}
+
+/// A rule as an act says it.
+fn rule_words(rule: Rule) -> Vec<String> {
+    let limit = |most: Option<u64>| most.unwrap_or(0).to_string();
+    let (name, value) = match rule {
+        Rule::Branching(rule) => {
+            let word = BRANCHING.iter().find(|(_, own)| settings::branching(*own) == rule);
+            ("branching", word.map_or("", |word| word.0).to_owned())
+        }
+        Rule::Selection(rule) => {
+            let word = SELECTION.iter().find(|(_, own)| settings::selection(*own) == rule);
+            ("selection", word.map_or("", |word| word.0).to_owned())
+        }
+        Rule::Nodes(most) => ("nodes", limit(most.map(u64::from))),
+        Rule::Iterations(most) => ("iterations", limit(most)),
+    };
+    vec![name.to_owned(), value]
 }
 
 fn node(act: &Act) -> Result<tree::NodeId, String> {
@@ -80,6 +126,7 @@ fn written(model: &Model, act: &tree::Act, after: u32) -> Act {
             on.extend(names(&set));
             of(ActKind::Cut, None, on)
         }
+        tree::Act::Rule(rule) => of(ActKind::Rule, None, rule_words(*rule)),
         tree::Act::Stop => of(ActKind::Stop, None, Vec::new()),
     }
 }
@@ -145,6 +192,10 @@ mod tests {
             act(ActKind::Cut, None, &["cover", "p", "a"]),
             act(ActKind::Cut, None, &["cover", "q", "a", "b"]),
             act(ActKind::Stop, None, &[]),
+            act(ActKind::Rule, None, &["branching", "pseudocost"]),
+            act(ActKind::Rule, None, &["selection", "depth first"]),
+            act(ActKind::Rule, None, &["nodes", "500"]),
+            act(ActKind::Rule, None, &["iterations", "0"]),
         ] {
             let known = act_of(&model, &given).unwrap();
             let told = tree::Acted { act: known, after: 4, replayed: false, refused: None };
@@ -160,6 +211,10 @@ mod tests {
             (act(ActKind::Cut, None, &["cover", "a"]), "cover has no such index"),
             (act(ActKind::Cut, None, &["cover", "p", "z"]), "know all of p, z"),
             (act(ActKind::Cut, None, &["order", "p"]), "no family order"),
+            (act(ActKind::Rule, None, &["branching", "best"]), "best is none of most fractional"),
+            (act(ActKind::Rule, None, &["cuts", "all"]), "cuts is no rule"),
+            (act(ActKind::Rule, None, &["nodes", "-3"]), "-3 is no limit"),
+            (act(ActKind::Rule, None, &[]), "names no rule"),
         ] {
             let refused = act_of(&model, &given).unwrap_err();
             assert!(refused.contains(why), "{refused}");

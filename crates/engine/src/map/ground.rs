@@ -100,6 +100,7 @@ pub(crate) fn audit_report(audit: &tree::Audit) -> AuditReport {
     let found = audit.result();
     let (_, nodes) = audit.progress();
     AuditReport {
+        title: String::new(),
         judgement: match found.judgement {
             tree::Judgement::Proved => Judgement::Proved,
             tree::Judgement::Refused => Judgement::Refused,

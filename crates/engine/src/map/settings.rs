@@ -7,18 +7,8 @@ use record::scenario::{BranchingRule, Run, Selection};
 /// The search's settings.
 pub(crate) fn settings(run: &Run, seed: u64) -> tree::Settings {
     tree::Settings {
-        branching: match run.branching {
-            BranchingRule::MostFractional => tree::Branching::MostFractional,
-            BranchingRule::Pseudocost => tree::Branching::Pseudocost,
-            BranchingRule::Strong => tree::Branching::Strong,
-            BranchingRule::Reliability => tree::Branching::Reliability,
-            BranchingRule::ByHand => tree::Branching::ByHand,
-        },
-        selection: match run.selection {
-            Selection::BestBound => tree::Selection::BestBound,
-            Selection::DepthFirst => tree::Selection::DepthFirst,
-            Selection::BestEstimate => tree::Selection::BestEstimate,
-        },
+        branching: branching(run.branching),
+        selection: selection(run.selection),
         priority: run.priority.clone(),
         node_work: node_work(run),
         cuts: cuts(run),
@@ -28,6 +18,24 @@ pub(crate) fn settings(run: &Run, seed: u64) -> tree::Settings {
         iteration_limit: (run.iterations > 0).then_some(run.iterations),
         search: run.search,
         seed,
+    }
+}
+
+pub(super) fn branching(rule: BranchingRule) -> tree::Branching {
+    match rule {
+        BranchingRule::MostFractional => tree::Branching::MostFractional,
+        BranchingRule::Pseudocost => tree::Branching::Pseudocost,
+        BranchingRule::Strong => tree::Branching::Strong,
+        BranchingRule::Reliability => tree::Branching::Reliability,
+        BranchingRule::ByHand => tree::Branching::ByHand,
+    }
+}
+
+pub(super) fn selection(rule: Selection) -> tree::Selection {
+    match rule {
+        Selection::BestBound => tree::Selection::BestBound,
+        Selection::DepthFirst => tree::Selection::DepthFirst,
+        Selection::BestEstimate => tree::Selection::BestEstimate,
     }
 }
 

@@ -79,15 +79,16 @@ pub(super) const FAMILY_STATES: [(&str, FamilyState); 3] =
     [("in", FamilyState::In), ("on demand", FamilyState::OnDemand), ("out", FamilyState::Out)];
 
 /// The words for the kinds of an act.
-pub(super) const ACTS: [(&str, ActKind); 4] = [
+pub(super) const ACTS: [(&str, ActKind); 5] = [
     ("branch", ActKind::Branch),
     ("close", ActKind::Close),
     ("cut", ActKind::Cut),
     ("stop", ActKind::Stop),
+    ("rule", ActKind::Rule),
 ];
 
 /// The words for the branching rules.
-pub(super) const BRANCHING: [(&str, BranchingRule); 5] = [
+pub const BRANCHING: [(&str, BranchingRule); 5] = [
     ("most fractional", BranchingRule::MostFractional),
     ("pseudocost", BranchingRule::Pseudocost),
     ("strong", BranchingRule::Strong),
@@ -96,7 +97,7 @@ pub(super) const BRANCHING: [(&str, BranchingRule); 5] = [
 ];
 
 /// The words for the node selection rules.
-pub(super) const SELECTION: [(&str, Selection); 3] = [
+pub const SELECTION: [(&str, Selection); 3] = [
     ("best bound", Selection::BestBound),
     ("depth first", Selection::DepthFirst),
     ("best estimate", Selection::BestEstimate),

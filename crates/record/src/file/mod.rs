@@ -10,6 +10,7 @@ mod nearest;
 mod origin;
 mod print;
 
+pub use decode::{BRANCHING, SELECTION};
 pub use nearest::nearest;
 pub use origin::Origin;
 pub use print::print;

@@ -18,6 +18,9 @@ pub enum Judgement {
 /// What an audit of a log found.
 #[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
 pub struct AuditReport {
+    /// The title of the rival, where a saved log was proved.
+    #[serde(default)]
+    pub title: String,
     /// The whole in a word.
     pub judgement: Judgement,
     /// The exact value of the plan, as a fraction or a whole number; none without a plan.

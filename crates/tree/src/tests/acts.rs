@@ -116,7 +116,7 @@ fn acts_are_replayed_to_the_same_events() {
                     Act::Branch { .. } => 0,
                     Act::Close { .. } => 1,
                     Act::Cut { .. } => 2,
-                    Act::Stop => 3,
+                    Act::Stop | Act::Rule(_) => 3,
                 }] += 1;
             }
             let (events, summary) = (search.take_events(), search.summary());

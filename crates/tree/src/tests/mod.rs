@@ -15,6 +15,7 @@ mod inspection;
 mod jeroslow;
 mod measures;
 mod node_work;
+mod rules;
 mod slices;
 pub(crate) mod support;
 mod trips;

@@ -7,6 +7,7 @@
 //! | `keep` | saving by itself, restoring, and other tabs |
 //! | `kept` | the list of scenarios kept by name |
 //! | `notice` | what is said about all that |
+//! | `proof` | the proof of a log that was opened |
 //! | `verdict` | whether results are those the link or file was made with |
 
 mod keep;
@@ -14,6 +15,7 @@ mod kept;
 mod link;
 mod notice;
 mod open;
+mod proof;
 mod verdict;
 
 use yew::prelude::*;
@@ -31,6 +33,7 @@ use kept::KeptPanel;
 use link::LinkPanel;
 use notice::{Notice, NoticeView};
 use open::{OpenFile, use_drop};
+use proof::{LogFile, Proof};
 
 /// The id of the button that opens the link's panel.
 const COPY: &str = "copy-link";
@@ -65,7 +68,15 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
     };
     use_keeping(&props.document, &props.opening, &say);
     use_links(&act, &say);
-    use_drop(&act, &say);
+    let log = use_state_eq(|| None::<std::rc::Rc<LogFile>>);
+    let prove = {
+        let (log, say) = (log.setter(), say.clone());
+        use_callback((), move |file: LogFile, ()| {
+            say.emit(Notice::default());
+            log.set(Some(std::rc::Rc::new(file)));
+        })
+    };
+    use_drop(&act, &say, &prove);
     use_undo_keys(&act);
     let close = {
         let set = panel.setter();
@@ -83,6 +94,13 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
         let set = notice.setter();
         Callback::from(move |said: Notice| set.set(said))
     };
+    let proved = {
+        let (log, tell) = (log.setter(), tell.clone());
+        Callback::from(move |said: Notice| {
+            log.set(None);
+            tell.emit(said);
+        })
+    };
     html! {
         <section class="share" aria-label="The scenario">
             <div class="row">
@@ -91,7 +109,7 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
                     aria-expanded={if *panel { "true" } else { "false" }}
                 >{ "Copy link" }</button>
                 <button type="button" data-testid="save-file" onclick={save.reform(|_| ())}>{ "Save file" }</button>
-                <OpenFile act={act.clone()} say={tell.clone()} />
+                <OpenFile act={act.clone()} say={tell.clone()} prove={prove} />
                 <button
                     type="button" data-testid="kept" onclick={toggle(&list)}
                     aria-expanded={if *list { "true" } else { "false" }}
@@ -106,6 +124,7 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
                     say={tell.clone()}
                 />
             }
+            <Proof log={(*log).clone()} end={proved} />
             <NoticeView notice={(*notice).clone()} {act} save={save_offered} hide={tell.reform(|()| Notice::default())} />
         </section>
     }

@@ -1,8 +1,10 @@
-//! Opening a file: a scenario takes the page's place, any other text is read as an instance.
+//! Opening a file: a scenario takes the page's place, a log is proved, any other text is read as an
+//! instance.
 
 use gloo_events::{EventListener, EventListenerOptions};
-use gloo_file::callbacks::{FileReader, read_as_text};
+use gloo_file::callbacks::{FileReader, read_as_bytes};
 use record::file::looks_like_a_scenario;
+use record::log::looks_like_a_log;
 use wasm_bindgen::JsCast;
 use web_sys::{DragEvent, File, HtmlInputElement};
 use yew::prelude::*;
@@ -10,6 +12,7 @@ use yew::prelude::*;
 use crate::state::document::DocumentAction;
 use crate::state::share::{Refusal, read};
 use crate::view::share::notice::Notice;
+use crate::view::share::proof::LogFile;
 
 /// The largest file that is read, in bytes.
 const LARGEST: f64 = 8.0 * 1024.0 * 1024.0;
@@ -18,7 +21,11 @@ const LARGEST: f64 = 8.0 * 1024.0 * 1024.0;
 pub(crate) struct OpenProps {
     pub(crate) act: Callback<DocumentAction>,
     pub(crate) say: Callback<Notice>,
+    pub(crate) prove: Callback<LogFile>,
 }
+
+/// What files are handed to.
+type Takers = (Callback<DocumentAction>, Callback<Notice>, Callback<LogFile>);
 
 /// The button.
 #[component]
@@ -33,18 +40,18 @@ pub(crate) fn OpenFile(props: &OpenProps) -> Html {
             }
         })
     };
-    let (act, say) = (props.act.clone(), props.say.clone());
+    let takers = (props.act.clone(), props.say.clone(), props.prove.clone());
     let onchange = Callback::from(move |event: Event| {
         let input: HtmlInputElement = event.target_unchecked_into();
         if let Some(file) = input.files().and_then(|files| files.get(0)) {
-            *reader.borrow_mut() = open(file, act.clone(), say.clone());
+            *reader.borrow_mut() = open(file, takers.clone());
         }
         input.set_value("");
     });
     html! {
         <>
             <button type="button" onclick={press}>{ "Open file" }</button>
-            <input ref={input} type="file" hidden=true data-testid="open-file" aria-label="Scenario file" {onchange} />
+            <input ref={input} type="file" hidden=true data-testid="open-file" aria-label="Scenario or log file" {onchange} />
         </>
     }
 }
@@ -52,9 +59,13 @@ pub(crate) fn OpenFile(props: &OpenProps) -> Html {
 /// Files dropped anywhere but on the box of the instance, which takes them itself. Without this
 /// the browser would leave the page for the file.
 #[hook]
-pub(crate) fn use_drop(act: &Callback<DocumentAction>, say: &Callback<Notice>) {
+pub(crate) fn use_drop(
+    act: &Callback<DocumentAction>,
+    say: &Callback<Notice>,
+    prove: &Callback<LogFile>,
+) {
     let reader = use_mut_ref(|| None::<FileReader>);
-    let (act, say) = (act.clone(), say.clone());
+    let takers = (act.clone(), say.clone(), prove.clone());
     use_effect_with((), move |()| {
         let window = gloo_utils::window();
         let options = EventListenerOptions::enable_prevent_default();
@@ -68,7 +79,7 @@ pub(crate) fn use_drop(act: &Callback<DocumentAction>, say: &Callback<Notice>) {
             let Some(data) = dropped(event).filter(|_| !taken) else { return };
             event.prevent_default();
             if let Some(file) = data.files().and_then(|files| files.get(0)) {
-                *reader.borrow_mut() = open(file, act.clone(), say.clone());
+                *reader.borrow_mut() = open(file, takers.clone());
             }
         });
         move || std::mem::drop((over, drop))
@@ -81,15 +92,16 @@ fn dropped(event: &Event) -> Option<web_sys::DataTransfer> {
     data.types().iter().any(|kind| kind == "Files").then_some(data)
 }
 
-fn open(file: File, act: Callback<DocumentAction>, say: Callback<Notice>) -> Option<FileReader> {
+fn open(file: File, (act, say, prove): Takers) -> Option<FileReader> {
     let name = file.name();
     if file.size() > LARGEST {
         let words = format!("{name} is larger than 8 MB and was not opened.");
         say.emit(Notice::refusal(Refusal::new(words)));
         return None;
     }
-    Some(read_as_text(&file.into(), move |text| match text {
-        Ok(text) => take(&name, text, &act, &say),
+    Some(read_as_bytes(&file.into(), move |bytes| match bytes {
+        Ok(bytes) if looks_like_a_log(&bytes) => prove.emit((name.clone(), bytes)),
+        Ok(bytes) => take(&name, String::from_utf8_lossy(&bytes).into_owned(), &act, &say),
         Err(error) => say.emit(Notice::of(format!("{name} could not be read: {error}."))),
     }))
 }

@@ -1,0 +1,48 @@
+//! Rules and limits that are changed during a run. A change is an act: it comes between two nodes,
+//! tells how many were solved before it, and is replayed there to the same events.
+
+use crate::event::NodeId;
+use crate::hold::Held;
+use crate::search::Search;
+use crate::settings::{Branching, Selection};
+
+/// What holds from now on.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Rule {
+    /// The branching rule. Nodes that waited for a branching by hand are branched on by it.
+    Branching(Branching),
+    /// The rule for the next node, over all nodes that are open.
+    Selection(Selection),
+    /// The search ends when so many nodes are solved in all; `None` is no limit.
+    Nodes(Option<u32>),
+    /// The search ends when so many simplex iterations are made in all; `None` is no limit.
+    Iterations(Option<u64>),
+}
+
+impl Search {
+    /// Lets a rule hold from now on. `O(nodes held)`.
+    pub(crate) fn change(&mut self, rule: Rule) {
+        match rule {
+            Rule::Branching(branching) => {
+                self.settings.branching = branching;
+                if branching != Branching::ByHand {
+                    self.release_all(branching);
+                }
+            }
+            Rule::Selection(selection) => self.settings.selection = selection,
+            Rule::Nodes(limit) => self.settings.node_limit = limit,
+            Rule::Iterations(limit) => self.settings.iteration_limit = limit,
+        }
+    }
+
+    /// Branches on the nodes that wait for a person, each by this rule at its own point.
+    fn release_all(&mut self, branching: Branching) {
+        let held: Vec<(NodeId, Held)> = self.holding.take_all();
+        for (node, held) in held {
+            match self.chooser.choose(branching, held.x()) {
+                Some(choice) => self.branch_held(node, &held, &choice),
+                None => self.holding.put_back(node, held),
+            }
+        }
+    }
+}

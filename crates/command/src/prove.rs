@@ -53,7 +53,7 @@ pub(crate) fn prove(
 }
 
 /// What comes of a log.
-fn proved(log: Log) -> Result<AuditReport, ErrorReport> {
+fn proved(log: Log) -> std::result::Result<AuditReport, ErrorReport> {
     let mut audit = LogAudit::new(log)?;
     while !audit.advance(USUAL_SLICE)? {}
     Ok(audit.report())

@@ -94,8 +94,8 @@ fn a_dispatched_job_shop_is_among_all_schedules_and_near_the_shortest() {
         }
         let (mut steps, mut table) = (String::new(), String::new());
         for (j, route) in routes.iter().enumerate() {
-            for m in 0..3 {
-                table += &format!("j{j} m{m} {}\n", times[j][m]);
+            for (m, time) in times[j].iter().enumerate() {
+                table += &format!("j{j} m{m} {time}\n");
             }
             for pair in route.windows(2) {
                 steps += &format!("j{j} m{} m{}\n", pair[0], pair[1]);

@@ -45,7 +45,7 @@ pub fn grown(search: &SearchReport) -> Vec<String> {
     let mut all = Vec::new();
     if let Some(plan) = &search.plan {
         let value = plan.value.map_or_else(String::new, |value| format!(": {}", short(value)));
-        let word = if plan.feasible { "is one" } else { "is none" };
+        let word = if plan.feasible { "is one" } else { "is not taken" };
         all.push(format!("The plan that was given {word}{value}"));
         all.extend(plan.remarks.iter().cloned());
     }

@@ -27,6 +27,15 @@ mod second;
 #[path = "page/share.rs"]
 mod share;
 
+#[path = "page/proofs.rs"]
+mod proofs;
+
+#[path = "page/settings.rs"]
+mod settings;
+
+#[path = "page/published.rs"]
+mod published;
+
 #[path = "page/workers.rs"]
 mod workers;
 

@@ -1,5 +1,6 @@
-//! Round trips of published size in the browser, with the seconds that they take. They are run by
-//! hand (`-- --ignored --nocapture`), with the folder of the open data in `HULLWARD_DATA`.
+//! Round trips of published size in the browser, with the seconds that they take. They take
+//! minutes and depend on the clock, so they run where `HULLWARD_LONG` is set (`-- --nocapture`), with
+//! the folder of the open data in `HULLWARD_DATA`.
 
 #![expect(clippy::disallowed_types, reason = "these say how long the page takes")]
 
@@ -9,6 +10,11 @@ use hullward_tests_browser::Outcome;
 use hullward_tests_browser::visit::{Source, visit};
 
 use crate::lanes::{button, part, paste, scattered, text};
+
+/// Whether long tests are asked for.
+fn long() -> bool {
+    std::env::var_os("HULLWARD_LONG").is_some()
+}
 
 /// The status of the first lane, once it holds one of these words.
 async fn until(
@@ -32,8 +38,10 @@ async fn until(
 
 /// kroA100 (TSPLIB, Reinelt 1991; optimum 21282) by subtours on demand and blossoms.
 #[tokio::test(flavor = "multi_thread")]
-#[ignore = "takes a minute; run by hand"]
 async fn a_hundred_stops_are_solved_to_the_published_optimum() -> Outcome<()> {
+    if !long() {
+        return Ok(());
+    }
     let data = std::env::var("HULLWARD_DATA")?;
     for (name, optimum) in [("rat99", "1,211"), ("kroA100", "21,282")] {
         let file = std::fs::read_to_string(format!("{data}/tsplib/{name}.tsp"))?;
@@ -61,8 +69,10 @@ async fn a_hundred_stops_are_solved_to_the_published_optimum() -> Outcome<()> {
 
 /// The subtour bound of 200 scattered points (invented) within five seconds.
 #[tokio::test(flavor = "multi_thread")]
-#[ignore = "depends on the clock; run by hand"]
 async fn the_subtour_bound_of_two_hundred_stops_is_there_within_five_seconds() -> Outcome<()> {
+    if !long() {
+        return Ok(());
+    }
     let scenario = format!(
         "hullward = 1\n[instance]\nreader = \"points\"\ntext = '''\n{}'''\n\
          [[rival]]\nfrom = \"tsp/subtours\"\n",

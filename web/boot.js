@@ -21,8 +21,14 @@
     const [page, engine, opinion] = await Promise.all(
       [pageBytes, engineBytes, opinionBytes].map((bytes) => WebAssembly.compile(bytes)),
     );
-    const address = (script) =>
-      URL.createObjectURL(new Blob([script], { type: "text/javascript" }));
+    // Where the browser knows trusted types, these two scripts alone may become workers.
+    const trust = globalThis.trustedTypes?.createPolicy("hullward", {
+      createScriptURL: (address) => address,
+    });
+    const address = (script) => {
+      const blob = URL.createObjectURL(new Blob([script], { type: "text/javascript" }));
+      return trust ? trust.createScriptURL(blob) : blob;
+    };
     globalThis.hullward = Object.freeze({
       engineModule: engine,
       workerUrl: address(engineScript),

@@ -462,6 +462,8 @@ pub struct NodeDetail {
     pub drawings: Vec<Drawing>,
     /// The cycle that proves it infeasible or unbounded, where the proof walks one.
     pub cycle: Option<Cycle>,
+    /// What each family does in the relaxation, in the order of the model.
+    pub families: Vec<FamilyAtNode>,
     /// Members of families over subsets that the solution violates, with their sets.
     pub violated: Vec<ViolatedSubset>,
     /// Rows of the ray of an infeasible node, named, with multipliers.
@@ -473,6 +475,21 @@ pub struct NodeDetail {
     pub branching: Option<String>,
     /// Why its subtree is not closed by hand, as a clause.
     pub closing: Option<String>,
+}
+
+/// A constraint family at a node.
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
+pub struct FamilyAtNode {
+    /// Its name; "general cuts" for rows of no family.
+    pub family: String,
+    /// Its rows in the relaxation.
+    pub rows: u32,
+    /// Rows that hold the vertex.
+    pub held: u32,
+    /// Rows whose dual is not 0.
+    pub priced: u32,
+    /// The greatest dual in size, in units of the objective for a unit of the right-hand side.
+    pub greatest: f64,
 }
 
 /// The value of a column at a node.
@@ -488,6 +505,8 @@ pub struct ColumnValue {
     pub cost: f64,
     /// Whether it must be whole and is not.
     pub fractional: bool,
+    /// How far the bound is expected to move below and above it, where branchings were seen.
+    pub gains: Option<(f64, f64)>,
     /// The variable and its indices, as an act by hand names them; empty where this column is not
     /// branched on by hand at this node.
     pub on: Vec<String>,

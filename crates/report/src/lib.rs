@@ -5,6 +5,7 @@
 //! | [`number`] | numbers as a reader wants them |
 //! | [`audit`] | what came of proving a search again, in sentences |
 //! | [`axis`] | round ticks and the shared scale |
+//! | [`difference`] | what differs between two rivals as they are written |
 //! | [`explain`] | why a rival has no plan or no bound, in sentences |
 //! | [`layout`] | places of tree nodes, stable while the tree grows |
 //! | [`map`] | places fitted to a frame, arcs, hulls |
@@ -21,6 +22,7 @@ pub mod audit;
 pub mod axis;
 pub mod csv;
 pub mod decision;
+pub mod difference;
 pub mod explain;
 pub mod labels;
 pub mod layout;

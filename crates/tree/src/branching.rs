@@ -159,6 +159,18 @@ impl Chooser {
         [down, up]
     }
 
+    /// The expected gains of both sides of every fractional column, in order; empty before a gain
+    /// was seen on both sides.
+    pub(crate) fn expectations(&self, x: &[f64]) -> Vec<(ColumnId, [f64; 2])> {
+        if self.all_down.count == 0 || self.all_up.count == 0 {
+            return Vec::new();
+        }
+        let fractional = self.whole.iter().filter(|j| is_fractional(x[j.index()]));
+        let expected =
+            |&column: &ColumnId| (column, self.expected(&Choice::new(column, x[column.index()])));
+        fractional.map(expected).collect()
+    }
+
     /// Whether so many gains are known on both sides of a column.
     pub(crate) fn is_reliable(&self, column: ColumnId, least: u32) -> bool {
         let j = column.index();
@@ -264,6 +276,9 @@ mod tests {
             chooser.learn(&Branch { column: ColumnId(2), side, bound: 0.0 }, 0.5, 10.0);
         }
         assert_eq!(chooser.choose(Branching::Pseudocost, &x).unwrap().column, ColumnId(2));
+        let expected = chooser.expectations(&x);
+        assert_eq!(expected.len(), 3);
+        assert_eq!(expected[2], (ColumnId(2), chooser.expected(&Choice::new(ColumnId(2), x[2]))));
     }
 
     #[test]

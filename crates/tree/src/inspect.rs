@@ -14,6 +14,7 @@ use separate::{Progress, Separator, Violated};
 use crate::acts::Refusal;
 use crate::cycle::{self, Cycle};
 use crate::event::{Branch, NodeId, NodeState};
+use crate::family_view::FamilyView;
 use crate::relaxation::{RowOrigin, direction};
 use crate::search::Search;
 
@@ -60,6 +61,11 @@ pub struct NodeView {
     pub x: Vec<f64>,
     /// The reduced cost of each column in the direction of the objective.
     pub reduced_costs: Vec<f64>,
+    /// What is expected of a branching on each fractional column: how far the bound moves below and
+    /// above it, by the pseudocosts seen so far. Empty before there are any.
+    pub expected: Vec<(ColumnId, [f64; 2])>,
+    /// What each family does in the relaxation.
+    pub families: Vec<FamilyView>,
     /// Sets whose member the point violates. In a model without families over subsets that holds
     /// round trips: the sets that arcs with a value leave with less than 1 in all.
     pub violated: Vec<ViolatedSubset>,
@@ -99,6 +105,8 @@ impl Search {
             path,
             x: Vec::new(),
             reduced_costs: Vec::new(),
+            expected: Vec::new(),
+            families: Vec::new(),
             violated: Vec::new(),
             ray: Vec::new(),
             cycle: None,
@@ -136,6 +144,8 @@ impl Search {
                 view.reduced_costs =
                     solution.reduced_costs.iter().map(|d| direction * d + 0.0).collect();
                 view.x.clone_from(&solution.x);
+                view.expected = self.chooser.expectations(&view.x);
+                view.families = self.family_views(solution, &simplex.basis());
                 view.violated = self.violated(&view.x);
             }
             Outcome::Infeasible(ray) => {

@@ -27,6 +27,7 @@ pub(crate) fn run_parts(place: &Workplace, parts: &[Part]) -> Result<(), Fault> 
             Part::Counts => step("instructions of fixed solves", || counts::check(place, false))?,
             Part::Page => page(place)?,
             Part::Browser => browser(place)?,
+            Part::Firefox => firefox(place, parts.len() == 1)?,
             Part::Reference => reference(place)?,
         }
     }
@@ -59,6 +60,26 @@ fn browser(place: &Workplace) -> Result<(), Fault> {
     })
 }
 
+/// Tests of the main job in Firefox; all of them when nothing else is asked for. Without a driver
+/// this is left out and said.
+fn firefox(place: &Workplace, all: bool) -> Result<(), Fault> {
+    step("the same in Firefox", || {
+        packages::ensure(&["firefox-esr"], "for the tests in Firefox")?;
+        let Some(driver) = packages::program(place.root(), "geckodriver", GECKODRIVER) else {
+            println!(
+                "   LEFT OUT: tests in Firefox, since geckodriver {GECKODRIVER} cannot be had"
+            );
+            return Ok(());
+        };
+        let mut test = cargo(place);
+        test.args(["test", "--package", BROWSER, "--test", "page", "--"]);
+        if !all {
+            test.args(MAIN_JOB);
+        }
+        run(test.env("HULLWARD_BROWSER", "firefox").env("HULLWARD_GECKODRIVER", driver))
+    })
+}
+
 fn reference(place: &Workplace) -> Result<(), Fault> {
     step("reference checks", || {
         packages::ensure(&["cmake", "libclang-dev"], "to build HiGHS for the reference checks")?;
@@ -67,6 +88,12 @@ fn reference(place: &Workplace) -> Result<(), Fault> {
         run(cargo(place).arg("test").args(both))
     })
 }
+
+/// The driver's version.
+const GECKODRIVER: &str = "0.37.1";
+
+/// Tests of the main job, by the beginnings of their names.
+const MAIN_JOB: [&str; 4] = ["opening::", "pasting::", "solving::", "nodes::"];
 
 const LINT: [&str; 4] = ["--all-targets", "--", "-D", "warnings"];
 

@@ -3,7 +3,8 @@
 //!
 //! The Content-Security-Policy names each script and the style by the SHA-256 of its text, allows
 //! WebAssembly and workers made from the page itself, and names no source of requests: `default-src
-//! 'none'` then stands for `connect-src` too, so the page can send nothing anywhere.
+//! 'none'` then stands for `connect-src` too, so the page can send nothing anywhere. Where trusted
+//! types are known, no text becomes markup or a script; the boot script alone names the workers'.
 
 use base64::Engine as _;
 use base64::engine::general_purpose::STANDARD;
@@ -101,7 +102,8 @@ fn policy(scripts: &[&str], style: &str) -> String {
     let hashes: Vec<String> = scripts.iter().map(|script| source_hash(script)).collect();
     format!(
         "default-src 'none'; script-src {} 'wasm-unsafe-eval'; worker-src blob:; style-src {}; \
-         img-src data: blob:; base-uri 'none'; form-action 'none'",
+         img-src data: blob:; base-uri 'none'; form-action 'none'; \
+         require-trusted-types-for 'script'; trusted-types hullward",
         hashes.join(" "),
         source_hash(style),
     )

@@ -6,7 +6,7 @@ use crate::fault::Fault;
 pub(crate) const USAGE: &str = "\
 cargo xtask page [--port P] [--no-serve]   build the page into web/dist, then serve it
 cargo xtask serve [--port P]               serve web/dist as it is
-cargo xtask test [--only PART]...          what CI runs; PART: native, counts, page, browser, reference
+cargo xtask test [--only PART]...          what CI runs; PART: native, counts, page, browser, firefox, reference
 cargo xtask counts [--write]               instructions of fixed solves against the list of them
 cargo xtask bench lp [--quick] ...         speed of the linear programs; `bench help` says more
 cargo xtask bench tree [--quick] ...       speed of searches beside microlp and HiGHS
@@ -63,14 +63,16 @@ pub(crate) enum Part {
     Page,
     /// The built page in Chromium.
     Browser,
+    /// The same page and tests in Firefox, where it can be had.
+    Firefox,
     /// Against published values and independent solvers.
     Reference,
 }
 
 impl Part {
     /// All parts, quick ones first.
-    pub(crate) const ALL: [Part; 5] =
-        [Part::Native, Part::Counts, Part::Page, Part::Browser, Part::Reference];
+    pub(crate) const ALL: [Part; 6] =
+        [Part::Native, Part::Counts, Part::Page, Part::Browser, Part::Firefox, Part::Reference];
 
     fn named(name: &str) -> Result<Part, Fault> {
         match name {
@@ -78,10 +80,11 @@ impl Part {
             "counts" => Ok(Part::Counts),
             "page" => Ok(Part::Page),
             "browser" => Ok(Part::Browser),
+            "firefox" => Ok(Part::Firefox),
             "reference" => Ok(Part::Reference),
             other => Err(Fault::new(format!(
-                "there is no part {other:?}; the parts are native, counts, page, browser and \
-                 reference"
+                "there is no part {other:?}; the parts are native, counts, page, browser, firefox \
+                 and reference"
             ))),
         }
     }

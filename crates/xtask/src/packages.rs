@@ -1,6 +1,6 @@
 //! Debian packages that a step needs.
 
-use std::path::Path;
+use std::path::{Path, PathBuf};
 use std::process::Command;
 
 use crate::fault::Fault;
@@ -41,6 +41,23 @@ pub(crate) fn fetch(root: &Path, name: &str, version: &str) -> Result<(), Fault>
     let mut npm = Command::new("npm");
     npm.args(["install", "--no-audit", "--no-fund", "--ignore-scripts", "--prefix"]);
     run(npm.arg(folder).arg(format!("{name}@{version}")))
+}
+
+/// A program that cargo builds from its package into `target/tools`, unless it is on the path or was
+/// built before. `None` where it cannot be had.
+pub(crate) fn program(root: &Path, name: &str, version: &str) -> Option<PathBuf> {
+    if crate::process::on_path(name) {
+        return Some(name.into());
+    }
+    let folder = root.join("target/tools");
+    let built = folder.join("bin").join(name);
+    if !built.is_file() {
+        let mut cargo = Command::new(std::env::var_os("CARGO").unwrap_or("cargo".into()));
+        cargo.args(["install", "--quiet", "--locked", "--version", version, "--root"]);
+        cargo.arg(&folder).arg("--target-dir").arg(folder.join("target")).arg(name);
+        run(&mut cargo).ok()?;
+    }
+    built.is_file().then_some(built)
 }
 
 /// The line that installs packages.

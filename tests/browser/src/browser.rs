@@ -10,7 +10,8 @@ use fantoccini::{Client, Locator};
 use serde_json::{Value, json};
 use tokio::time::{Instant, sleep};
 
-use crate::devtools::Post;
+use crate::devtools::{Computed, Post};
+use crate::visit::Kind;
 use crate::{Outcome, fault};
 
 /// How long to wait for what should come soon.
@@ -25,11 +26,36 @@ const MARK: &str = "data-found-by-test";
 #[derive(Debug)]
 pub struct Browser {
     client: Client,
+    kind: Kind,
+}
+
+/// Elements that may have a role, where the browser's tree of accessibility cannot be asked.
+fn candidates(role: &str) -> String {
+    let native = match role {
+        "button" => "button, summary",
+        "textbox" => "textarea, input:not([type]), input[type=text]",
+        "combobox" => "select",
+        "heading" => "h1, h2, h3, h4",
+        "table" => "table",
+        "radio" => "input[type=radio]",
+        "checkbox" => "input[type=checkbox]",
+        "link" => "a[href]",
+        _ => "[role]",
+    };
+    format!("{native}, [role={role}]")
 }
 
 impl Browser {
-    pub(crate) fn new(client: Client) -> Self {
-        Self { client }
+    pub(crate) fn new(client: Client, kind: Kind) -> Self {
+        Self { client, kind }
+    }
+
+    pub(crate) fn kind(&self) -> Kind {
+        self.kind
+    }
+
+    pub(crate) async fn resize(&self, width: u32) -> Outcome<()> {
+        Ok(self.client.set_window_size(width, 1000).await?)
     }
 
     pub(crate) async fn close(self) -> Outcome<()> {
@@ -103,11 +129,15 @@ impl Browser {
         Ok(text.as_str().unwrap_or_default().to_owned())
     }
 
-    /// Warnings and errors that the console has shown since it was last asked.
+    /// Warnings and errors that the console has shown since it was last asked; Firefox's driver does
+    /// not tell them.
     ///
     /// # Errors
     /// Those of the driver.
     pub async fn console(&self) -> Outcome<Vec<String>> {
+        if self.kind == Kind::Firefox {
+            return Ok(Vec::new());
+        }
         let entries = self.client.issue_cmd(Post::console()).await?;
         let bad = |entry: &&Value| entry["level"] == "SEVERE" || entry["level"] == "WARNING";
         let entries = entries.as_array().map(Vec::as_slice).unwrap_or_default();
@@ -196,7 +226,30 @@ impl Browser {
         self.named(role, |found| found.trim().is_empty()).await
     }
 
+    /// As [`Browser::named`], by WebDriver alone.
+    async fn computed(&self, role: &str, fits: impl Fn(&str) -> bool) -> Outcome<Vec<Element>> {
+        let mut found = Vec::new();
+        for element in self.client.find_all(Locator::Css(&candidates(role))).await? {
+            // An element that has gone since is not found.
+            let has = self.ask(&element, "computedrole").await.unwrap_or_default();
+            let name = self.ask(&element, "computedlabel").await.unwrap_or_default();
+            if has == role && fits(&name) && element.is_displayed().await.unwrap_or(false) {
+                found.push(element);
+            }
+        }
+        Ok(found)
+    }
+
+    async fn ask(&self, element: &Element, what: &'static str) -> Outcome<String> {
+        let element = element.element_id().to_string();
+        let said = self.client.issue_cmd(Computed { element, what }).await?;
+        Ok(said.as_str().unwrap_or_default().to_owned())
+    }
+
     async fn named(&self, role: &str, fits: impl Fn(&str) -> bool) -> Outcome<Vec<Element>> {
+        if self.kind == Kind::Firefox {
+            return self.computed(role, fits).await;
+        }
         let document = self.protocol("DOM.getDocument", json!({ "depth": 0 })).await?;
         let query = json!({ "nodeId": document["root"]["nodeId"], "role": role });
         let found = self.protocol("Accessibility.queryAXTree", query).await?;

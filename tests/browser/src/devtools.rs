@@ -1,4 +1,5 @@
-//! Commands of chromedriver beyond WebDriver: the browser's own protocol, and its console.
+//! Commands beyond what the client knows: chromedriver's way to the browser's own protocol and its
+//! console, and WebDriver's way to the role and name of an element.
 
 use fantoccini::wd::WebDriverCompatibleCommand;
 use http::Method;
@@ -31,5 +32,25 @@ impl WebDriverCompatibleCommand for Post {
 
     fn method_and_body(&self, _: &Url) -> (Method, Option<String>) {
         (Method::POST, Some(self.body.to_string()))
+    }
+}
+
+/// A GET of what the browser computes of an element, `computedrole` or `computedlabel`.
+#[derive(Debug)]
+pub(crate) struct Computed {
+    /// The element's reference.
+    pub(crate) element: String,
+    /// What is asked for.
+    pub(crate) what: &'static str,
+}
+
+impl WebDriverCompatibleCommand for Computed {
+    fn endpoint(&self, base: &Url, session: Option<&str>) -> Result<Url, ParseError> {
+        let session = session.unwrap_or_default();
+        base.join(&format!("session/{session}/element/{}/{}", self.element, self.what))
+    }
+
+    fn method_and_body(&self, _: &Url) -> (Method, Option<String>) {
+        (Method::GET, None)
     }
 }

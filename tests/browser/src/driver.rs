@@ -1,4 +1,4 @@
-//! A chromedriver of one's own, on a port that it chooses, ended with everything it started.
+//! A driver of one's own, on a port that it chooses, ended with everything it started.
 
 use std::process::Stdio;
 
@@ -65,6 +65,18 @@ pub(crate) async fn chromedriver() -> Outcome<Listening> {
     Listening::start(&mut command, |line| {
         let port = line.split("successfully on port ").nth(1)?;
         Some(format!("http://127.0.0.1:{}", port.trim_end_matches('.')))
+    })
+    .await
+}
+
+/// Starts geckodriver; it says its address. `HULLWARD_GECKODRIVER` names it where it is not on the
+/// path.
+pub(crate) async fn geckodriver() -> Outcome<Listening> {
+    let program = std::env::var_os("HULLWARD_GECKODRIVER").unwrap_or("geckodriver".into());
+    let mut command = Command::new(program);
+    command.arg("--port=0");
+    Listening::start(&mut command, |line| {
+        Some(format!("http://{}", line.split("Listening on ").nth(1)?.trim()))
     })
     .await
 }

@@ -6,6 +6,7 @@ use std::path::PathBuf;
 use serde_json::json;
 
 use crate::browser::Browser;
+use crate::visit::Kind;
 use crate::{Outcome, server};
 
 /// How the page is looked at.
@@ -32,11 +33,15 @@ impl Screen {
 }
 
 impl Browser {
-    /// Looks at the page so from now on.
+    /// Looks at the page so from now on; in Firefox only by the width, in the colours that the
+    /// machine has.
     ///
     /// # Errors
     /// Those of the driver.
     pub async fn look(&self, screen: Screen) -> Outcome<()> {
+        if self.kind() == Kind::Firefox {
+            return self.resize(screen.width).await;
+        }
         let size = json!({
             "width": screen.width, "height": 900, "deviceScaleFactor": 1, "mobile": false
         });
@@ -61,6 +66,9 @@ impl Browser {
 
     /// A picture of the whole page, from its top to its end.
     async fn whole_page(&self, screen: Screen) -> Outcome<Vec<u8>> {
+        if self.kind() == Kind::Firefox {
+            return self.picture().await;
+        }
         let height = self.script("return document.documentElement.scrollHeight").await?;
         let height = height.as_u64().unwrap_or(900).max(900);
         let size = json!({

@@ -12,6 +12,22 @@ use crate::state::share::{Saved, next_place, restored};
 /// The two places.
 pub(crate) const PLACES: [&str; 2] = ["hullward.scenario.1.a", "hullward.scenario.1.b"];
 
+/// Where it stands that the hints were dismissed.
+const HINTS: &str = "hullward.hints.1";
+
+/// Whether the first steps are still to be shown: until they are dismissed once.
+pub(crate) fn wants_hints() -> bool {
+    storage().is_some_and(|storage| storage.get_item(HINTS).ok().flatten().is_none())
+}
+
+/// The first steps are not shown again.
+pub(crate) fn dismiss_hints() {
+    if let Some(storage) = storage() {
+        // A full store shows them once more; nothing is lost.
+        let _ = storage.set_item(HINTS, "dismissed");
+    }
+}
+
 fn storage() -> Option<Storage> {
     window().local_storage().ok().flatten()
 }

@@ -4,7 +4,7 @@
 //! The module is posted first, then requests; replies come back as bytes, a failure as text.
 
 use gloo_events::EventListener;
-use js_sys::{Reflect, Uint8Array, global};
+use js_sys::{Array, Function, Reflect, Uint8Array, global};
 use record::message::{Envelope, Request};
 use record::wire::{read_envelope, write_request};
 use wasm_bindgen::{JsCast, JsValue};
@@ -67,8 +67,7 @@ impl RawWorker {
             Program::Engine => ("engineModule", "workerUrl"),
             Program::Opinion => ("opinionModule", "opinionUrl"),
         };
-        let address = part(script)?.as_string().ok_or("the page has no worker script")?;
-        let worker = Worker::new(&address).map_err(|error| text(&error))?;
+        let worker = made(&part(script)?)?;
         worker.post_message(&part(module)?).map_err(|error| text(&error))?;
         let listeners = listeners(&worker, hear);
         Ok(Self { worker, _listeners: listeners })
@@ -84,6 +83,16 @@ impl Drop for RawWorker {
     fn drop(&mut self) {
         self.worker.terminate();
     }
+}
+
+/// A worker of an address as it stands, a trusted one where the browser knows of trust: as a mere
+/// text it would be refused.
+fn made(address: &JsValue) -> Result<Worker, String> {
+    let class =
+        Reflect::get(&global(), &JsValue::from_str("Worker")).map_err(|error| text(&error))?;
+    let class = class.dyn_ref::<Function>().ok_or("the browser has no workers")?;
+    let worker = Reflect::construct(class, &Array::of1(address)).map_err(|error| text(&error))?;
+    Ok(worker.unchecked_into())
 }
 
 fn listeners(worker: &Worker, hear: &Callback<Result<Vec<u8>, String>>) -> [EventListener; 3] {

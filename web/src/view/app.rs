@@ -9,6 +9,7 @@ use crate::state::same::Found;
 use crate::view::announcer::Announcer;
 use crate::view::evidence::Evidence;
 use crate::view::hands::Hands;
+use crate::view::hints::Hints;
 use crate::view::inspector::Inspector;
 use crate::view::instance::Instance;
 use crate::view::notes::Notes;
@@ -36,6 +37,7 @@ pub(crate) fn App() -> Html {
             <Share document={document.clone()} opening={(*opening).clone()} digest={(*digest).clone()} />
             <Verdict document={document.clone()} {found} />
             <main>
+                <Hints />
                 <Instance document={document.clone()} />
                 <Rivals document={document.clone()} board={board.clone()} />
                 <Inspector document={document.clone()} board={board.clone()} />

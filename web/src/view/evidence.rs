@@ -7,6 +7,7 @@ use yew::prelude::*;
 
 use crate::state::board::Board;
 use crate::state::document::{Document, Slot};
+use crate::view::differences::Differences;
 use crate::view::figure::{figure, gap, share};
 use crate::view::inspector::InspectorProps as EvidenceProps;
 use crate::view::lane::is_over;
@@ -43,6 +44,7 @@ pub(crate) fn Evidence(props: &EvidenceProps) -> Html {
                    checked to within an amount where what is proved is a bound that far from the figure. \
                    Node counts with + are of a search that is not finished." }
             </p>
+            <Differences document={document.clone()} board={board.clone()} />
             <Studies document={document.clone()} board={board.clone()} />
             <p class="prose caution">
                 { "A plan that comes out of a model is a decision aid: the driving, working-time, energy and safety rules \

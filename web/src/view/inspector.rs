@@ -5,7 +5,7 @@ use record::event::{Branching, NodeState};
 use record::message::{InstanceReport, NodeDetail, RivalReport, ViolatedSubset};
 use record::results::Proof;
 use record::scenario::{Act, ActKind};
-use report::number::{fixed, full, of, short};
+use report::number::{count, fixed, full, of, short};
 use report::proof;
 use wasm_bindgen::JsCast;
 use web_sys::HtmlElement;
@@ -169,6 +169,7 @@ fn Detail(props: &DetailProps) -> Html {
                 <p>{ sentence(detail) }</p>
                 { bound(detail) }
                 { path(&detail.path, props.rival.as_deref()) }
+                { families(detail) }
                 { violated(props, *set, &show) }
                 { cycle(detail, &report.unit) }
                 { ray(detail) }
@@ -250,6 +251,36 @@ fn path(steps: &[Branching], rival: Option<&RivalReport>) -> Html {
                 for step in steps.iter() { <li>{ branching(step, columns) }</li> }
             </ol>
         </>
+    }
+}
+
+/// What each family does here: which rows hold the vertex, and what they cost.
+fn families(detail: &NodeDetail) -> Html {
+    if detail.families.is_empty() {
+        return Html::default();
+    }
+    html! {
+        <details class="folded small" data-testid="node-families">
+            <summary>{ "Duals by family" }</summary>
+            <table>
+                <thead><tr>
+                    <th scope="col">{ "family" }</th><th scope="col">{ "rows" }</th>
+                    <th scope="col" title="Rows that hold the vertex: they are not basic">{ "tight" }</th>
+                    <th scope="col" title="Rows whose dual is not 0">{ "priced" }</th>
+                    <th scope="col">{ "greatest" }</th>
+                </tr></thead>
+                <tbody>
+                    for family in detail.families.iter() {
+                        <tr>
+                            <th scope="row">{ family.family.clone() }</th>
+                            <td>{ count(u64::from(family.rows)) }</td><td>{ count(u64::from(family.held)) }</td>
+                            <td>{ count(u64::from(family.priced)) }</td><td>{ short(family.greatest) }</td>
+                        </tr>
+                    }
+                </tbody>
+            </table>
+            <p class="soft">{ "Duals say what a unit of a right-hand side buys at this vertex; in a degenerate one they are one choice of many." }</p>
+        </details>
     }
 }
 

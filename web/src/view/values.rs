@@ -2,7 +2,7 @@
 
 use record::message::{ColumnValue, NodeDetail, RivalReport};
 use record::scenario::{Act, ActKind};
-use report::number::{fixed, full, of};
+use report::number::{fixed, full, of, short};
 use yew::prelude::*;
 
 use crate::state::pointer::Shared;
@@ -31,6 +31,7 @@ pub(crate) fn Values(props: &ValuesProps) -> Html {
     let values = use_memo(props.detail.clone(), |detail| sorted(&detail.values));
     let fractional = values.iter().filter(|value| value.fractional).count();
     let may_branch = props.act.is_some() && values.iter().any(|value| !value.on.is_empty());
+    let expected = values.iter().any(|value| value.gains.is_some());
     let limit = if *all { MOST } else { SHOWN };
     let more = {
         let (all, open) = (all.setter(), *all);
@@ -46,10 +47,11 @@ pub(crate) fn Values(props: &ValuesProps) -> Html {
                     <th scope="col">{ "value" }</th>
                     <th scope="col">{ cost.to_owned() }</th>
                     <th scope="col">{ "reduced cost" }</th>
+                    if expected { <th scope="col" title="How far the bound is expected to move below and above, by the branchings seen so far">{ "expected ↓ ↑" }</th> }
                     if may_branch { <th scope="col">{ "by hand" }</th> }
                 </tr></thead>
                 <tbody>
-                    for value in values.iter().take(limit) { { row(props, value, may_branch) } }
+                    for value in values.iter().take(limit) { { row(props, value, (may_branch, expected)) } }
                 </tbody>
             </table>
             if values.len() > SHOWN {
@@ -94,7 +96,12 @@ fn branch(props: &ValuesProps, value: &ColumnValue, name: &str) -> Html {
     }
 }
 
-fn row(props: &ValuesProps, value: &ColumnValue, may_branch: bool) -> Html {
+/// The expected gains below and above, in short.
+fn gains(value: &ColumnValue) -> String {
+    value.gains.map_or_else(String::new, |(down, up)| format!("{} {}", short(down), short(up)))
+}
+
+fn row(props: &ValuesProps, value: &ColumnValue, (may_branch, expected): (bool, bool)) -> Html {
     let column = value.column;
     let chosen = props.column == Some(column);
     let name = props.rival.as_ref().and_then(|rival| rival.column_names.get(column as usize));
@@ -110,6 +117,7 @@ fn row(props: &ValuesProps, value: &ColumnValue, may_branch: bool) -> Html {
             <td><data value={value.value.to_string()} title={full(value.value)}>{ fixed(value.value, 3) }</data></td>
             <td>{ figure(Some(value.cost)) }</td>
             <td>{ figure(Some(value.reduced_cost)) }</td>
+            if expected { <td>{ gains(value) }</td> }
             if may_branch { <td>{ by_hand }</td> }
         </tr>
     }
@@ -127,6 +135,7 @@ mod tests {
             reduced_cost: 0.0,
             cost: 1.0,
             fractional,
+            gains: None,
             on: Vec::new(),
         };
         let order: Vec<u32> =

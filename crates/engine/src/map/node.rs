@@ -1,7 +1,7 @@
 //! A node in full.
 
 use model::{ColumnId, Model};
-use record::message::{ColumnValue, Cycle, NodeDetail, ViolatedSubset};
+use record::message::{ColumnValue, Cycle, FamilyAtNode, NodeDetail, ViolatedSubset};
 
 use super::event::{branch, node_state, number};
 use super::root::proved;
@@ -28,6 +28,7 @@ pub(crate) fn node_detail(model: &Model, drawings: &Drawings, view: &tree::NodeV
         values: values(model, view),
         drawings: drawings.of(model, &view.x),
         cycle: view.cycle.as_ref().map(|found| cycle(model, found)),
+        families: view.families.iter().map(family).collect(),
         violated: view.violated.iter().map(|found| violated(model, found)).collect(),
         ray: view.ray.iter().map(|(row, y)| (row.clone(), tidy(*y))).collect(),
         ahead: view.ahead,
@@ -47,6 +48,7 @@ fn values(model: &Model, view: &tree::NodeView) -> Vec<ColumnValue> {
             reduced_cost: tidy(reduced_cost),
             cost: model.numbers().float(column.cost),
             fractional: column.integer && (value - value.round()).abs() > INTEGRALITY,
+            gains: gains(view, id),
             on: if view.branchable.binary_search(&id).is_ok() {
                 column_words(model, id)
             } else {
@@ -55,6 +57,18 @@ fn values(model: &Model, view: &tree::NodeView) -> Vec<ColumnValue> {
         }
     });
     values.collect()
+}
+
+fn gains(view: &tree::NodeView, column: ColumnId) -> Option<(f64, f64)> {
+    let at = view.expected.binary_search_by_key(&column, |(column, _)| *column).ok()?;
+    let [down, up] = view.expected[at].1;
+    Some((tidy(down), tidy(up)))
+}
+
+fn family(found: &tree::FamilyView) -> FamilyAtNode {
+    let tree::FamilyView { family, rows, held, priced, greatest } = found;
+    let (rows, held, priced) = (*rows, *held, *priced);
+    FamilyAtNode { family: family.clone(), rows, held, priced, greatest: tidy(*greatest) }
 }
 
 fn cycle(model: &Model, found: &tree::Cycle) -> Cycle {

@@ -25,6 +25,9 @@ fn check(search: &mut Search) -> u32 {
             assert_eq!(counted, fractional as usize);
             assert!(branch_column.is_none_or(|column| apart(&view.x[column.index()])));
             assert_eq!(view.reduced_costs.len(), view.x.len());
+            let held: u32 = view.families.iter().map(|family| family.held).sum();
+            assert!(held as usize <= view.x.len(), "a vertex is held by as many as it has columns");
+            assert!(view.families.iter().all(|family| family.priced <= family.held));
         }
     }
     nodes

@@ -2,7 +2,7 @@
 
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::SOON;
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit, visit_chromium};
 use serde_json::json;
 
 use crate::lanes::{add, button, part, paste, paste_long_work, scattered, status};
@@ -69,7 +69,7 @@ async fn stop_acts_as_soon_during_one_long_lp() -> Outcome<()> {
 
 #[tokio::test(flavor = "multi_thread")]
 async fn no_task_of_the_page_is_long_while_a_tree_grows() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         paste_long_work(browser).await?;
         browser.script(WATCH_TASKS).await?;
         button(browser, "A", "run").await?.click().await?;

@@ -40,3 +40,19 @@ async fn rivals_are_renamed_and_moved_and_keep_their_runs() -> Outcome<()> {
     })
     .await
 }
+
+#[tokio::test(flavor = "multi_thread")]
+async fn what_differs_between_two_rivals_is_told_in_words_and_lines() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        for letter in ["A", "B"] {
+            status(browser, letter, "root solved").await?;
+        }
+        browser.still("[data-testid=differences] summary").await?.click().await?;
+        browser.shows("Only A has the variables u (17 columns).").await?;
+        browser.shows("Only B has the families (supply), 17 rows; (capacity), 306 rows.").await?;
+        browser.shows("Lines of notation that only one of them has").await?;
+        browser.find("combobox", "Second rival").await?.select_by_index(0).await?;
+        browser.shows("A and A have the same sizes").await
+    })
+    .await
+}

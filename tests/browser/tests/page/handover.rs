@@ -4,7 +4,7 @@ use std::path::Path;
 
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit_chromium};
 use tokio::process::Command;
 
 use crate::lanes::{button, status, text};
@@ -45,7 +45,7 @@ async fn written(letter: &str, form: &str) -> Outcome<String> {
 
 #[tokio::test(flavor = "multi_thread")]
 async fn a_rival_is_taken_away_as_the_command_writes_it() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         status(browser, "C", "root solved").await?;
         browser.script(CATCH).await?;
         for letter in ["A", "C"] {

@@ -3,7 +3,7 @@
 
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit, visit_chromium};
 use serde_json::json;
 
 use crate::lanes::{button, paste, paste_long_work, status};
@@ -112,7 +112,7 @@ async fn a_second_tab_is_noticed_and_neither_overwrites_the_other() -> Outcome<(
 
 #[tokio::test(flavor = "multi_thread")]
 async fn a_store_that_is_filled_is_said_and_nothing_is_lost() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         browser.shows("18 stops").await?;
         title(browser, "Kept before").await?;
         stored(browser, "Kept before").await?;
@@ -156,6 +156,21 @@ async fn a_page_left_in_the_middle_of_a_run_opens_as_it_was() -> Outcome<()> {
         has_title(browser, "In the middle").await?;
         browser.shows("30 stops, 870 drives").await?;
         status(browser, "A", "root solved").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn first_steps_that_are_dismissed_never_come_back() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        browser.shows("What stands here is an example").await?;
+        browser.still("[data-testid=dismiss-hints]").await?.click().await?;
+        let gone = async || Ok(!browser.text().await?.contains("What stands here is an example"));
+        browser.until("the first steps are gone", SOON, gone).await?;
+        reload(browser).await?;
+        browser.shows("Rivals, by the").await?;
+        assert!(gone().await?);
+        Ok(())
     })
     .await
 }

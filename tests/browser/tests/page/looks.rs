@@ -3,7 +3,7 @@
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::SOON;
 use hullward_tests_browser::screen::Screen;
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit, visit_chromium};
 
 use crate::lanes::{button, status};
 
@@ -29,7 +29,7 @@ async fn nothing_is_cut_off_from_a_phone_to_a_wide_screen() -> Outcome<()> {
 
 #[tokio::test(flavor = "multi_thread")]
 async fn light_and_dark_differ_and_are_kept_as_pictures() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         status(browser, "C", "root solved").await?;
         button(browser, "C", "run").await?.click().await?;
         status(browser, "C", "closed").await?;

@@ -77,3 +77,25 @@ async fn the_text_twin_is_a_tree_with_the_same_nodes() -> Outcome<()> {
     })
     .await
 }
+
+#[tokio::test(flavor = "multi_thread")]
+async fn duals_stand_by_family_and_gains_beside_the_fractional_values() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        status(browser, "B", "root solved").await?;
+        for _ in 0..3 {
+            button(browser, "B", "step").await?.click().await?;
+            status(browser, "B", "paused").await?;
+        }
+        let tree = browser.select(&part("B", "tree")).await?;
+        tree.send_keys(&Key::Down.to_string()).await?;
+        browser.find("heading", "Node 1 of B").await?;
+        browser.still("[data-testid=node-families] summary").await?.click().await?;
+        browser.shows("Duals say what a unit of a right-hand side buys").await?;
+        let table = browser.select("[data-testid=node-families] table").await?.text().await?;
+        for family in ["leave", "enter", "supply", "capacity"] {
+            assert!(table.contains(family), "{table}");
+        }
+        browser.shows("expected ↓ ↑").await
+    })
+    .await
+}

@@ -2,7 +2,7 @@
 
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::Browser;
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit, visit_chromium};
 use record::opinion::{Relaxation, RelaxationColumn};
 use record::wire::write_relaxation;
 use serde_json::json;
@@ -52,7 +52,7 @@ async fn another_code_agrees_with_the_three_roots_of_the_demo() -> Outcome<()> {
 
 #[tokio::test(flavor = "multi_thread")]
 async fn what_another_code_says_of_a_falsified_relaxation_is_a_disagreement() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         // min 42 x, 1 ≤ x ≤ 2: below every bound of the demo.
         let column = RelaxationColumn { cost: 42.0, lower: 1.0, upper: 2.0 };
         let falsified = Relaxation { columns: vec![column], ..Relaxation::default() };

@@ -2,7 +2,7 @@
 
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit, visit_chromium};
 use record::file::parse;
 use record::link::{pack, unpack};
 use record::scenario::Scenario;
@@ -34,8 +34,12 @@ pub(crate) async fn says(browser: &Browser, words: &str) -> Outcome<()> {
 
 /// Opens the page anew in the same browser.
 pub(crate) async fn reload(browser: &Browser) -> Outcome<()> {
-    browser.script("globalThis.before = true; setTimeout(() => location.reload(), 0)").await?;
-    let opened = "return !globalThis.before && document.documentElement?.dataset.boot === 'done'";
+    browser
+        .script(
+            "document.documentElement.dataset.before = ''; setTimeout(() => location.reload(), 0)",
+        )
+        .await?;
+    let opened = "return document.documentElement?.dataset.before === undefined && document.documentElement?.dataset.boot === 'done'";
     browser
         .until("the page opens anew", SOON, async || Ok(browser.script(opened).await? == true))
         .await
@@ -148,7 +152,7 @@ async fn a_link_says_whether_the_results_are_the_same() -> Outcome<()> {
 
 #[tokio::test(flavor = "multi_thread")]
 async fn a_link_is_copied_where_the_browser_allows_it() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         let keep = "navigator.clipboard.writeText = async (text) => { globalThis.copied = text; }";
         browser.script(keep).await?;
         press(browser, "copy-link").await?;
@@ -233,7 +237,7 @@ async fn a_file_is_saved_and_opened() -> Outcome<()> {
     let file = folder.join("mine.hullward.toml");
     let broken = folder.join("broken.toml");
     std::fs::write(&broken, "hullward = 1\ntitel = \"x\"\n")?;
-    let outcome = visit(Source::File, async |browser| {
+    let outcome = visit_chromium(Source::File, async |browser| {
         paste(browser, SCENARIO).await?;
         browser.shows("9 stops, 72 drives").await?;
         let there = bounds(browser).await?;

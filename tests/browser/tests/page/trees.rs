@@ -6,7 +6,7 @@ use std::time::Duration;
 use fantoccini::key::Key;
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit, visit_chromium};
 use record::file::parse;
 use serde_json::json;
 
@@ -64,7 +64,7 @@ async fn labelled(browser: &Browser, selector: &str, words: &str) -> Outcome<()>
 /// The goal: a frame of a pan spends under 8 ms in scripts at 100,000 nodes.
 #[tokio::test(flavor = "multi_thread")]
 async fn a_hundred_thousand_nodes_are_panned_within_eight_milliseconds_a_frame() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         let scenario = parse(&parity(17)).scenario.ok_or("no scenario")?;
         open_link(browser, &scenario).await?;
         browser.shows("the models in MPS below bring their data along").await?;

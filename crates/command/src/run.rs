@@ -7,6 +7,7 @@ use engine::native::{Phase, RivalRun, USUAL_SLICE, Watch, instance_title, result
 use record::event::Log;
 use record::file::{self, Parsed};
 use record::ground::Ground;
+use record::message::Complaint;
 use record::results::{RivalResult, Status, Timing};
 use record::scenario::{Scenario, Study, letter};
 use record::study::Report;
@@ -178,6 +179,16 @@ impl Job<'_> {
         Ok((one, ending))
     }
 
+    /// What is said of fields of `[run]`, at their places in the file.
+    fn in_run(&self, mut complaints: Vec<Complaint>) -> Vec<Complaint> {
+        for found in &mut complaints {
+            let field = found.code.trim_start_matches("run.");
+            let place = file::place_in_run(&self.source.text, field);
+            (found.line, found.column) = place.unwrap_or((found.line, found.column));
+        }
+        complaints
+    }
+
     /// What is wrong with a rival, and what notation warns of, at its place in the file or in
     /// the shipped text.
     fn complain_of(
@@ -192,7 +203,10 @@ impl Job<'_> {
         let from = scenario.rivals.get(rival).and_then(|rival| rival.from.as_ref());
         let of_rival = from.unwrap_or(name);
         if let Some(report) = &run.report {
-            complain(err, of_rival, origin, &report.complaints)?;
+            let (of_run, own): (Vec<Complaint>, Vec<Complaint>) =
+                report.complaints.iter().cloned().partition(|found| found.code.starts_with("run."));
+            complain(err, name, None, &self.in_run(of_run))?;
+            complain(err, of_rival, origin, &own)?;
         }
         let Some(error) = &one.error else { return Ok(()) };
         if error.place == "instance" {

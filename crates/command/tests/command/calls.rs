@@ -319,6 +319,10 @@ fn a_priority_without_a_variable_is_told() {
     let output = hullward(&["run", "-"], &two_rivals("[run]\npriority = [\"xx\"]\n"));
     let said = err(&output);
     assert!(said.contains("warning: `priority` in [run] names xx"), "{said}");
+    // It was told at line 1 of the rival's formulation.
+    let input = two_rivals("[run]\npriority = [\"xx\"]\n");
+    let line = 1 + input.lines().position(|line| line.starts_with("priority")).expect("there");
+    assert!(said.contains(&format!("-:{line}:12: warning: `priority`")), "{said}");
     assert!(said.contains("did you mean x? its variables: x"), "{said}");
 }
 

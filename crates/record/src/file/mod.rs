@@ -60,6 +60,21 @@ pub fn parse(text: &str) -> Parsed {
     }
 }
 
+/// Line and column, both from 1, of a field of `[run]`, where the text has it.
+///
+/// ```
+/// let text = "hullward = 1\n[run]\nnodes = 5\npriority = [\"y\"]\n";
+/// assert_eq!(hullward_record::file::place_in_run(text, "priority"), Some((4, 12)));
+/// ```
+#[must_use]
+pub fn place_in_run(text: &str, field: &str) -> Option<(u32, u32)> {
+    let (document, _) = toml::de::DeTable::parse_recoverable(text);
+    let toml::de::DeValue::Table(run) = document.get_ref().get("run")?.get_ref() else {
+        return None;
+    };
+    Some(crate::place::line_column(text, run.get(field)?.span().start))
+}
+
 /// Whether a text is meant as a scenario: one of its lines gives `hullward` a value.
 #[must_use]
 pub fn looks_like_a_scenario(text: &str) -> bool {

@@ -76,8 +76,15 @@ impl Core {
         let mut repair =
             Repair { new_rows: m.saturating_sub(known_rows) as u32, dropped: 0, inserted: 0 };
         self.balance(&mut repair);
-        self.head.clear();
+        let before = std::mem::take(&mut self.head);
+        let is_factorised = self.canonical && self.factor.updates() == 0;
         self.sort_head();
+        if is_factorised && before == self.head {
+            // A node right after its parent: the factors are there, and count as made, so that what
+            // came before a loading shows nowhere.
+            self.canonical = true;
+            self.count_factorisation();
+        }
         let replaced = self.refactor_first();
         repair.dropped += replaced;
         repair.inserted += replaced;

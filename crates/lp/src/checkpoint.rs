@@ -15,6 +15,7 @@ pub struct Checkpoint {
     head: Vec<u32>,
     weight: Vec<f64>,
     factor: Factor,
+    factor_ticks: u64,
 }
 
 impl Simplex {
@@ -33,6 +34,7 @@ impl Simplex {
             head: core.head.clone(),
             weight: core.weight.clone(),
             factor: core.factor.clone(),
+            factor_ticks: core.factor_ticks,
         }
     }
 
@@ -48,6 +50,7 @@ impl Simplex {
         core.head.clone_from(&checkpoint.head);
         core.weight.clone_from(&checkpoint.weight);
         core.factor.clone_from(&checkpoint.factor);
+        core.factor_ticks = checkpoint.factor_ticks;
         core.canonical = true;
         core.restore_given();
         core.settle_statuses();

@@ -88,6 +88,8 @@ pub(crate) struct Core {
     pub(crate) factoring: Workspace,
     /// True while the factors belong to the sorted head and carry no update.
     pub(crate) canonical: bool,
+    /// What the last factorisation cost in ticks.
+    pub(crate) factor_ticks: u64,
     pub(crate) care: Care,
     pub(crate) room: Room,
     pub(crate) scratch: Scratch,
@@ -131,6 +133,7 @@ impl Core {
             factor: Factor::default(),
             factoring: Workspace::default(),
             canonical: false,
+            factor_ticks: 0,
             care: ATTEMPTS[0],
             room: Room::default(),
             scratch: Scratch::default(),
@@ -256,8 +259,8 @@ impl Core {
         }
         let (replaced, ticks) =
             self.factor.factorise(&mut self.factoring, threshold, self.care.singular);
-        self.ticks += ticks;
-        self.refactors += 1;
+        self.factor_ticks = ticks;
+        self.count_factorisation();
         for r in &replaced {
             let out = self.head[r.position as usize] as usize;
             let logical = self.columns() + r.row as usize;
@@ -268,6 +271,12 @@ impl Core {
             self.partition.is_current = false;
         }
         replaced.len() as u32
+    }
+
+    /// Counts the work of the last factorisation.
+    pub(crate) fn count_factorisation(&mut self) {
+        self.ticks += self.factor_ticks;
+        self.refactors += 1;
     }
 
     /// Factors of the sorted head without updates; attempts differ in which bases they count as

@@ -1,10 +1,10 @@
 //! Proved bounds and proofs that there is no point.
 
-use model::Number;
+use model::{Number, nearest_f64};
 
-use crate::kernel::{Objective, Sides, Sum, sum};
+use crate::kernel::{Objective, Sides, Sum, sum, sum_in_words};
 use crate::mend::mended;
-use crate::multipliers::{Multipliers, on_grid, snapped};
+use crate::multipliers::{Multipliers, on_grid, snapped, snapped_in_words};
 use crate::project::projected;
 use crate::rows::{Bounds, ExactRows};
 
@@ -23,6 +23,45 @@ use crate::rows::{Bounds, ExactRows};
 pub fn bound(rows: &ExactRows, bounds: &[Bounds], multipliers: &[f64]) -> Option<Number> {
     let value = values(rows, Objective::Costs, bounds, multipliers).max()?;
     Some(rows.as_given(value))
+}
+
+/// How near to the value in floating point a bound must be to be taken at once; relative to 1 + its
+/// size.
+const NEAR: f64 = 1e-9;
+
+/// As [`bound`], with less care: the first bound in machine words that is near `value`, which the
+/// multipliers have in floating point. The inner nodes of a search, which need no proof of their
+/// own, are bounded so. `O(non-zeros)`, at half the cost of [`bound`] and less.
+#[must_use]
+pub fn quick_bound(
+    rows: &ExactRows,
+    bounds: &[Bounds],
+    multipliers: &[f64],
+    value: f64,
+) -> Option<Number> {
+    if bounds.len() != rows.column_count() || multipliers.len() > rows.row_count() {
+        return None;
+    }
+    let objective = Objective::Costs;
+    let in_words = || {
+        let rounding = snapped_in_words(rows, objective, multipliers)?;
+        let sides = Sides { given: bounds, implied: None };
+        match sum_in_words(rows, objective, sides, &rounding)? {
+            Sum::Bound(value) => Some(value),
+            Sum::Open(_) => None,
+        }
+    };
+    let first = in_words();
+    let is_near = |bound: &Number| {
+        let bound = nearest_f64(&rows.as_given(bound.clone()));
+        (bound - value).abs() <= NEAR * (1.0 + value.abs())
+    };
+    if first.as_ref().is_some_and(is_near) {
+        return first.map(|bound| rows.as_given(bound));
+    }
+    let rounding = on_grid(rows, objective, multipliers);
+    let second = rounding.and_then(|rounding| closed(rows, objective, bounds, &rounding));
+    first.max(second).map(|bound| rows.as_given(bound))
 }
 
 /// Whether the ray proves that no point meets the rows and `bounds`: with y the ray, the

@@ -40,12 +40,13 @@ mod project;
 mod ray;
 mod refine;
 mod rows;
+mod small;
 #[cfg(test)]
 mod tests;
 mod vertex;
 
 pub use basis::{Standing, Standings};
-pub use bound::{bound, infeasible};
+pub use bound::{bound, infeasible, quick_bound};
 pub use certify::{Budget, Certifier, ExactMultipliers, Progress, Wish};
 pub use point::{Place, Point, Violation, violations};
 pub use refine::Residual;

@@ -77,15 +77,31 @@ pub(crate) fn on_grid(rows: &ExactRows, objective: Objective, y: &[f64]) -> Opti
 /// The multipliers as simple fractions; `None` where one is not near any, or their common
 /// denominator is too large.
 pub(crate) fn snapped(rows: &ExactRows, objective: Objective, y: &[f64]) -> Option<Multipliers> {
+    let fractions = fractions(rows, y)?;
+    let scale = objective_scale(rows, objective);
+    let small = || small_fractions(rows, i128::try_from(&scale).ok()?, &fractions);
+    small().or_else(|| large_fractions(rows, &Number::from(scale.clone()), &fractions))
+}
+
+/// As [`snapped`], where machine words suffice.
+pub(crate) fn snapped_in_words(
+    rows: &ExactRows,
+    objective: Objective,
+    y: &[f64],
+) -> Option<Multipliers> {
+    let scale = i128::try_from(&objective_scale(rows, objective)).ok()?;
+    small_fractions(rows, scale, &fractions(rows, y)?)
+}
+
+/// The simple fraction next to each multiplier, clipped.
+fn fractions(rows: &ExactRows, y: &[f64]) -> Option<Vec<(i64, i64)>> {
     let mut fractions = Vec::with_capacity(rows.row_count());
     for index in 0..rows.row_count() {
         let (top, bottom) = simple_fraction(given(y, index)?)?;
         let clipped = if has_side(rows, index, top.cmp(&0)) { top } else { 0 };
         fractions.push((clipped, bottom));
     }
-    let scale = objective_scale(rows, objective);
-    let small = || small_fractions(rows, i128::try_from(&scale).ok()?, &fractions);
-    small().or_else(|| large_fractions(rows, &Number::from(scale.clone()), &fractions))
+    Some(fractions)
 }
 
 /// The fractions times `scale`, for the scaled rows, over one denominator: in 128 bits, or
@@ -118,7 +134,7 @@ fn small_fractions(rows: &ExactRows, scale: i128, fractions: &[(i64, i64)]) -> O
 
 /// The greatest common divisor of two numbers that are not negative; in 64 bits, which are
 /// far quicker to divide, once the numbers fit.
-fn common_divisor(mut a: i128, mut b: i128) -> i128 {
+pub(crate) fn common_divisor(mut a: i128, mut b: i128) -> i128 {
     while b > i128::from(u64::MAX) || a > i128::from(u64::MAX) {
         if b == 0 {
             return a;

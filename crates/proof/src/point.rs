@@ -5,6 +5,7 @@ use dashu_int::{IBig, UBig};
 use model::{ColumnId, FamilyState, Model, Number, NumberId, RowId};
 
 use crate::multipliers::simple_fraction;
+use crate::small::{Small, SmallSum, meets};
 
 /// What a point violates.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -75,8 +76,12 @@ impl Point {
             violations.push(Violation { place: Place::Value(column), name, amount: Number::ONE });
         }
         let x: Vec<Number> = values.into_iter().map(Option::unwrap_or_default).collect();
+        let small: Vec<Option<Small>> = x.iter().map(Small::read).collect();
         for row in (0..model.row_count()).map(RowId::from_index) {
             if model.families()[model.row_family(row).index()].state == FamilyState::Out {
+                continue;
+            }
+            if meets(model, row, &small) == Some(true) {
                 continue;
             }
             if let Some(amount) = outside(model, &activity(model, row, &x), model.row_sides(row)) {
@@ -85,14 +90,17 @@ impl Point {
             }
         }
         for (index, column) in model.columns().iter().enumerate() {
-            if let Some(amount) = outside(model, &x[index], (column.lower, column.upper)) {
+            let sides = (column.lower, column.upper);
+            if small[index].and_then(|value| value.is_within(model, sides)) == Some(true) {
+                continue;
+            }
+            if let Some(amount) = outside(model, &x[index], sides) {
                 let id = ColumnId::from_index(index);
                 let name = model.column_name(id);
                 violations.push(Violation { place: Place::Bound(id), name, amount });
             }
         }
-        let costs = model.columns().iter().map(|column| model.numbers().exact(column.cost));
-        let objective = costs.zip(&x).fold(model.offset().clone(), |sum, (c, x)| sum + c * x);
+        let objective = model.offset() + cost(model, &x, &small);
         Self { x, objective, violations }
     }
 }
@@ -120,6 +128,19 @@ fn as_given(value: f64) -> Option<Number> {
 fn as_fraction(value: f64) -> Option<Number> {
     let Some((top, bottom)) = simple_fraction(value) else { return as_given(value) };
     Some(Number::from_parts(IBig::from(top), UBig::try_from(bottom).ok()?))
+}
+
+/// c'x: in machine words where they suffice.
+fn cost(model: &Model, x: &[Number], small: &[Option<Small>]) -> Number {
+    let costs = || model.columns().iter().map(|column| model.numbers().exact(column.cost));
+    let in_words = || {
+        let mut sum = SmallSum::ZERO;
+        for (cost, &value) in costs().zip(small) {
+            sum.add_product(Small::read(cost)?, value?)?;
+        }
+        sum.number()
+    };
+    in_words().unwrap_or_else(|| costs().zip(x).fold(Number::ZERO, |sum, (c, x)| sum + c * x))
 }
 
 fn activity(model: &Model, row: RowId, x: &[Number]) -> Number {

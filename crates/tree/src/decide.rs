@@ -30,11 +30,16 @@ impl Search {
         let mut hand = self.hand.take()?;
         let point = hand.point.as_ref()?;
         if !hand.exact {
-            let cheap = self.relaxation.as_ref()?.prove(&point.duals);
-            hand.proved = self.better(hand.proved.take(), cheap);
+            let value = self.user(point.bound);
+            let quick = self.relaxation.as_ref()?.prove_quickly(&point.duals, value);
+            hand.proved = self.better(hand.proved.take(), quick);
         }
         let closed = self.closed(&hand, point);
         let choice = if closed { None } else { self.choice(&hand, &point.x) };
+        if choice.is_none() && !hand.exact && !self.suffices(hand.proved.clone()) {
+            let careful = self.relaxation.as_ref()?.prove(&point.duals);
+            hand.proved = self.better(hand.proved.take(), careful);
+        }
         let held = self.is_to_be_held(hand.node);
         let state = match (closed, choice, hand.accepted) {
             (true, _, Some(_)) | (false, None, Some(_)) => NodeState::Integer,

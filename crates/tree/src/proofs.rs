@@ -158,7 +158,8 @@ impl Search {
         self.suffices(bound)
     }
 
-    fn suffices(&self, bound: Option<Number>) -> bool {
+    /// Whether a bound proves that a leaf holds no better plan.
+    pub(crate) fn suffices(&self, bound: Option<Number>) -> bool {
         bound.is_some_and(|bound| self.target.proves(&signed(&self.model, bound)))
     }
 

@@ -240,6 +240,11 @@ impl Relaxation {
         proof::bound(&self.exact, &self.bounds, duals)
     }
 
+    /// The same with less care, given the value of the relaxation.
+    pub(crate) fn prove_quickly(&self, duals: &[f64], value: f64) -> Option<Number> {
+        proof::quick_bound(&self.exact, &self.bounds, duals, value)
+    }
+
     /// The bound that multipliers prove on the node at the end of `path`.
     pub(crate) fn prove_at(&self, path: &[Branch], duals: &[f64]) -> Option<Number> {
         proof::bound(&self.exact, &self.bounds_at(path), duals)

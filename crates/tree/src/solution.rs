@@ -47,10 +47,12 @@ pub(crate) enum Verdict {
     Broken,
 }
 
-/// What the continuous part gave: floats, or, where these broke a row, an exact point.
+/// What the continuous part gave: floats, with the point that they stand for where it breaks nothing,
+/// or an exact point.
 #[derive(Debug, Clone, PartialEq)]
 pub(crate) enum Completed {
     Float(Vec<f64>),
+    Sound(Vec<f64>, Point),
     Exact(Vec<Number>),
 }
 
@@ -58,7 +60,7 @@ impl Completed {
     /// The nearest floats.
     pub(crate) fn near(&self) -> Vec<f64> {
         match self {
-            Self::Float(x) => x.clone(),
+            Self::Float(x) | Self::Sound(x, _) => x.clone(),
             Self::Exact(x) => x.iter().map(nearest_f64).collect(),
         }
     }
@@ -121,33 +123,28 @@ impl Checker {
     /// Checks a point exactly. `O(non-zeros)` and what the membership checks cost.
     pub(crate) fn check(&self, separators: &[Separator], x: &[f64]) -> Verdict {
         let rounded = self.rounded(x);
-        let mut member = true;
-        for separator in separators {
-            match separator.membership(&rounded) {
-                Membership::Satisfied => {}
-                Membership::Violated(violated) => return Verdict::Violates(violated),
-                Membership::Unknown => member = false,
-            }
+        match members(separators, &rounded) {
+            Ok(member) => self.judged(Point::new(&self.model, &rounded), member),
+            Err(violated) => Verdict::Violates(violated),
         }
-        self.judged(Point::new(&self.model, &rounded), member)
     }
 
     /// Checks what the continuous part gave.
     pub(crate) fn check_completed(&self, separators: &[Separator], x: Completed) -> Verdict {
-        let x = match x {
-            Completed::Float(x) => return self.check(separators, &x),
-            Completed::Exact(x) => x,
+        let near = match &x {
+            Completed::Float(x) => self.rounded(x),
+            _ => x.near(),
         };
-        let near: Vec<f64> = x.iter().map(nearest_f64).collect();
-        let mut member = true;
-        for separator in separators {
-            match separator.membership(&near) {
-                Membership::Satisfied => {}
-                Membership::Violated(violated) => return Verdict::Violates(violated),
-                Membership::Unknown => member = false,
-            }
-        }
-        self.judged(Point::of_exact(&self.model, x), member)
+        let member = match members(separators, &near) {
+            Ok(member) => member,
+            Err(violated) => return Verdict::Violates(violated),
+        };
+        let point = match x {
+            Completed::Float(_) => Point::new(&self.model, &near),
+            Completed::Sound(_, point) => point,
+            Completed::Exact(x) => Point::of_exact(&self.model, x),
+        };
+        self.judged(point, member)
     }
 
     fn judged(&self, point: Point, member: bool) -> Verdict {
@@ -219,8 +216,9 @@ impl Checker {
         let x = solution.x.clone();
         let x = self.rounded(&x);
         self.ticks += x.len() as u64;
-        if Point::new(&self.model, &x).violations.is_empty() {
-            return Some(Some(Completed::Float(x)));
+        let point = Point::new(&self.model, &x);
+        if point.violations.is_empty() {
+            return Some(Some(Completed::Sound(x, point)));
         }
         self.begin_proof();
         None
@@ -277,6 +275,19 @@ impl Checker {
     pub(crate) fn iterations(&self) -> u64 {
         self.iterations
     }
+}
+
+/// Whether every family could say that it meets a point, or a member that the point violates.
+fn members(separators: &[Separator], x: &[f64]) -> Result<bool, Violated> {
+    let mut member = true;
+    for separator in separators {
+        match separator.membership(x) {
+            Membership::Satisfied => {}
+            Membership::Violated(violated) => return Err(violated),
+            Membership::Unknown => member = false,
+        }
+    }
+    Ok(member)
 }
 
 /// By how much a point is outside the sides of a written row; at most 0 when it is not.

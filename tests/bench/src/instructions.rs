@@ -3,6 +3,7 @@
 //! The count of a run that makes the model ready without solving it is taken off.
 
 use crate::arguments::Arguments;
+use crate::clock;
 use crate::highs_peer;
 use crate::problems::named;
 use crate::solvers::{Solver, problem, sample};
@@ -20,8 +21,13 @@ const NAMES: [&str; 8] = [
     "ti20",
 ];
 
-/// Makes a problem ready and, unless only that is asked for, solves it once.
+/// Makes a problem ready and, unless only that is asked for, solves it once; with nobody to solve it
+/// and a name that begins with `search:`, searches it once in bare mode.
 pub(crate) fn once(name: &str, seed: u64, who: Option<Solver>) {
+    clock::stop();
+    if let Some(name) = name.strip_prefix("search:") {
+        return crate::trees::once(name, seed);
+    }
     let lp = named(name, seed).unwrap_or_else(|| panic!("there is no problem {name}")).lp;
     match who {
         Some(solver) => println!("{:?}", sample(solver, &lp, 1)),

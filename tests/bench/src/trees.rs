@@ -4,7 +4,7 @@
 use std::rc::Rc;
 
 use model::{ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
-use tree::{Branching, Classes, Cuts, NodeWork, Progress, Search, Selection, Settings};
+use tree::{Branching, Classes, Cuts, Heuristics, NodeWork, Progress, Search, Selection, Settings};
 
 use crate::arguments::Arguments;
 use crate::classes::{Comparison, Measured, line, self_check};
@@ -29,6 +29,11 @@ const NAMES: [&str; 9] = [
     "ti8",
 ];
 
+/// Problems of the set whose trees are larger: in bare mode, which ends after some nodes, they are
+/// searched as well.
+const LARGER: [&str; 6] =
+    ["tsp20-mtz", "tsp20-scf", "ufl20x50-weak", "uls50-bigm", "bp25x12", "ti20"];
+
 /// Nodes of a search in bare mode at most, for both.
 const MOST_NODES: u32 = 500;
 /// Nodes of a full search at most, and seconds.
@@ -41,37 +46,52 @@ const GOAL: f64 = 0.8;
 struct Found {
     seconds: f64,
     nodes: f64,
+    iterations: u64,
     value: Option<f64>,
     root: Option<f64>,
 }
 
 /// Measures and prints.
 pub(crate) fn run(arguments: &Arguments) {
-    let seeds = arguments.seeds();
-    let names: Vec<&str> = NAMES.into_iter().filter(|name| arguments.wants(name)).collect();
-    let problems: Vec<Named> =
-        seeds.flat_map(|seed| names.iter().filter_map(move |name| named(name, seed))).collect();
-    bare(&problems, arguments);
-    full(&problems);
+    let problems = |names: &[&'static str]| -> Vec<Named> {
+        let wanted = names.iter().filter(|name| arguments.wants(name));
+        let names: Vec<&str> = wanted.copied().collect();
+        let all =
+            arguments.seeds().flat_map(|seed| names.iter().map(move |name| named(name, seed)));
+        all.flatten().collect()
+    };
+    let all = problems(&[&NAMES[..], &LARGER[..]].concat());
+    bare("best bound, most fractional", &all, &bare_settings(), arguments);
+    let alike = Settings {
+        branching: Branching::Pseudocost,
+        selection: Selection::BestEstimate,
+        ..bare_settings()
+    };
+    bare("plunging, pseudocosts, as microlp's", &all, &alike, arguments);
+    full(&problems(&NAMES));
+}
+
+/// One search in bare mode, for a profile.
+pub(crate) fn once(name: &str, seed: u64) {
+    let problem = named(name, seed).unwrap_or_else(|| panic!("there is no problem {name}"));
+    let settings = bare_settings();
+    println!("{:?}", ours(&whole_model(&problem), &settings));
 }
 
 /// Time a node in bare mode, at most so many nodes, ours twice and microlp.
-fn bare(problems: &[Named], arguments: &Arguments) {
+fn bare(rules: &str, problems: &[Named], settings: &Settings, arguments: &Arguments) {
     println!(
-        "Searches in bare mode: CPU milliseconds a node (medians), at most {MOST_NODES} nodes"
+        "Searches in bare mode ({rules}): CPU milliseconds a node, at most {MOST_NODES} nodes"
     );
     println!(
-        "{:<24}{:>9}{:>9}{:>9} {:>7}{:>9}{:>9}",
-        "problem", "ours", "again", "microlp", "o/m", "nodes", "microlp"
+        "{:<24}{:>9}{:>9}{:>9} {:>7}{:>9}{:>9} {:>9}{:>9}",
+        "problem", "ours", "again", "microlp", "o/m", "nodes", "microlp", "it/node", "microlp"
     );
     let mut random = Random::new(arguments.order_seed());
     let mut measured = Vec::new();
     for problem in problems {
         let model = whole_model(problem);
-        let settings = Settings { node_limit: Some(MOST_NODES), ..Settings::default() };
-        let one = |who: usize| {
-            if who == 2 { microlp(problem) } else { ours(&model, &settings) }
-        };
+        let one = |who: usize| if who == 2 { microlp(problem) } else { ours(&model, settings) };
         let first = [one(0), one(1), one(2)];
         if first.iter().any(|found| found.nodes < 2.0) {
             println!("{:<24} closed at the root", problem.name);
@@ -85,14 +105,16 @@ fn bare(problems: &[Named], arguments: &Arguments) {
         });
         let ms: Vec<f64> = samples.iter().map(|samples| median(samples) * 1e3).collect();
         println!(
-            "{:<24}{:>9.3}{:>9.3}{:>9.3} {:>7.2}{:>9}{:>9}",
+            "{:<24}{:>9.3}{:>9.3}{:>9.3} {:>7.2}{:>9}{:>9} {:>9.1}{:>9.1}",
             problem.name,
             ms[0],
             ms[1],
             ms[2],
             ms[0] / ms[2],
             first[0].nodes,
-            first[2].nodes
+            first[2].nodes,
+            first[0].iterations as f64 / first[0].nodes,
+            first[2].iterations as f64 / first[2].nodes
         );
         measured.push(Measured {
             name: problem.name.clone(),
@@ -142,6 +164,12 @@ fn full(problems: &[Named]) {
         }
     }
     println!("within 3 times: {within} of {}\n", problems.len());
+}
+
+/// Nothing on: neither search looks for plans beside the points of its relaxations.
+fn bare_settings() -> Settings {
+    let heuristics = Heuristics { rounding: false, trip: false, diving: false, pump: false };
+    Settings { heuristics, node_limit: Some(MOST_NODES), ..Settings::default() }
 }
 
 /// Everything on.
@@ -196,6 +224,7 @@ fn ours(model: &Rc<Model>, settings: &Settings) -> Found {
     Found {
         seconds,
         nodes: f64::from(summary.nodes),
+        iterations: summary.iterations,
         value: summary.incumbent.filter(|_| summary.status == tree::Status::Optimal),
         root: cuts.or(search.root().and_then(|root| root.bound)),
     }
@@ -209,7 +238,13 @@ fn microlp(problem: &Named) -> Found {
     let (outcome, seconds) = clock::timed(|| model.solve_with(options));
     let outcome = outcome.unwrap();
     let stats = outcome.stats();
-    Found { seconds, nodes: stats.nodes_solved as f64, value: None, root: stats.best_bound }
+    Found {
+        seconds,
+        nodes: stats.nodes_solved as f64,
+        iterations: stats.lp_iterations,
+        value: None,
+        root: stats.best_bound,
+    }
 }
 
 /// HiGHS as it comes but for one thread; its root bound after cuts from a run of one node, its nodes
@@ -231,11 +266,12 @@ fn highs(problem: &Named) -> Found {
     let root = root.double_info_value(c"mip_dual_bound").ok().filter(|bound| bound.is_finite());
     let _ = std::fs::remove_file(&log);
     let (solved, seconds) = solve(None);
+    let optimal = solved.status() == highs::HighsModelStatus::Optimal;
+    let value = optimal.then(|| solved.objective_value());
+    drop(solved); // the report is written out when the model is gone
     let report = std::fs::read_to_string(&log).unwrap_or_default();
     let nodes = report.lines().find_map(|line| line.trim().strip_prefix("Nodes"));
     let nodes = nodes.and_then(|rest| rest.split_whitespace().next()?.parse().ok());
     let _ = std::fs::remove_file(&log);
-    let optimal = solved.status() == highs::HighsModelStatus::Optimal;
-    let value = optimal.then(|| solved.objective_value());
-    Found { seconds, nodes: nodes.unwrap_or(f64::NAN), value, root }
+    Found { seconds, nodes: nodes.unwrap_or(f64::NAN), iterations: 0, value, root }
 }

@@ -206,3 +206,28 @@ fn a_loaded_basis_forgets_the_past() {
         assert_eq!(fresh.basis(), used.basis());
     }
 }
+
+/// The basis that is current is loaded without making its factors again; they count as made, and all
+/// that follows is as after any other loading.
+#[test]
+fn loading_the_basis_that_is_current_is_like_any_loading() {
+    for lp in [single_commodity(7, 3), facilities(6, 9, false, 2), packing(9, 5, 4)] {
+        let mut near = Simplex::new(lp.problem());
+        let slack = near.basis();
+        near.solve(Limits::default());
+        let basis = near.basis();
+        let mut far = near.clone();
+        far.load_basis(&slack);
+        let (mut counts, mut ends) = (Vec::new(), Vec::new());
+        for simplex in [&mut near, &mut far] {
+            let before = simplex.stats();
+            simplex.load_basis(&basis);
+            simplex.set_bounds(Col(1), 0.0, 0.0);
+            ends.push(simplex.solve(Limits::default()).clone());
+            let after = simplex.stats();
+            counts.push((after.ticks - before.ticks, after.refactors - before.refactors));
+        }
+        assert_eq!(ends[0], ends[1]);
+        assert_eq!(counts[0], counts[1]);
+    }
+}

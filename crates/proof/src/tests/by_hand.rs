@@ -1,6 +1,6 @@
 //! Small programs whose optima are worked out by hand.
 
-use crate::{ExactRows, Place, Point, bound, bounds_of, infeasible, violations};
+use crate::{ExactRows, Place, Point, bound, bounds_of, infeasible, quick_bound, violations};
 use model::{ColumnId, ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
 
 fn ratio(top: i64, bottom: u64) -> Number {
@@ -61,6 +61,30 @@ fn wrong_duals_give_weaker_bounds() {
     }
     assert_eq!(bound(&rows, &bounds_of(&model), &[f64::NAN, 0.0]), None);
     assert_eq!(bound(&rows, &[], &[0.25, 0.25]), None);
+}
+
+/// Whatever the value is said to be, the quick bound is proved; near the true one it is the exact one.
+#[test]
+fn a_quick_bound_is_no_less_proved() {
+    for (sense, optimum) in [(Sense::Minimise, 11_i32), (Sense::Maximise, 9)] {
+        let model = two_rows(sense);
+        let (rows, bounds) = (ExactRows::new(&model), bounds_of(&model));
+        let noisy = [0.25 + 3e-12, 0.25 - 1e-12];
+        let quick = quick_bound(&rows, &bounds, &noisy, f64::from(optimum));
+        assert_eq!(quick, Some(Number::from(optimum)));
+        for y in [[0.1, 0.1], [0.3, 0.3], [1.0 / 7.0, 0.2]] {
+            for value in [0.0, f64::from(optimum), 1e9, f64::NAN] {
+                let quick = quick_bound(&rows, &bounds, &y, value);
+                let is_proved = |quick: Number| match sense {
+                    Sense::Minimise => quick <= Number::from(11),
+                    Sense::Maximise => quick >= Number::from(9),
+                };
+                assert!(quick.is_none_or(is_proved), "{y:?} and {value}");
+            }
+        }
+        assert_eq!(quick_bound(&rows, &bounds, &[f64::NAN, 0.0], 0.0), None);
+        assert_eq!(quick_bound(&rows, &[], &noisy, 0.0), None);
+    }
 }
 
 /// Duals that are no dyadic numbers come out as the fractions they are: min x with 7x ≥ 756/5.

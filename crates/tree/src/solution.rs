@@ -125,7 +125,7 @@ impl Checker {
         let rounded = self.rounded(x);
         match members(separators, &rounded) {
             Ok(member) => self.judged(Point::new(&self.model, &rounded), member),
-            Err(violated) => Verdict::Violates(violated),
+            Err(violated) => Verdict::Violates(*violated),
         }
     }
 
@@ -137,7 +137,7 @@ impl Checker {
         };
         let member = match members(separators, &near) {
             Ok(member) => member,
-            Err(violated) => return Verdict::Violates(violated),
+            Err(violated) => return Verdict::Violates(*violated),
         };
         let point = match x {
             Completed::Float(_) => Point::new(&self.model, &near),
@@ -278,12 +278,12 @@ impl Checker {
 }
 
 /// Whether every family could say that it meets a point, or a member that the point violates.
-fn members(separators: &[Separator], x: &[f64]) -> Result<bool, Violated> {
+fn members(separators: &[Separator], x: &[f64]) -> Result<bool, Box<Violated>> {
     let mut member = true;
     for separator in separators {
         match separator.membership(x) {
             Membership::Satisfied => {}
-            Membership::Violated(violated) => return Err(violated),
+            Membership::Violated(violated) => return Err(Box::new(violated)),
             Membership::Unknown => member = false,
         }
     }

@@ -10,11 +10,12 @@
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
 mod common;
 
-use common::{kitchen, shown};
+use common::{kitchen, run_time, shown};
 use hullward_notation::mathml::Element;
 use hullward_notation::{Diagnostic, check, model, parse, print, typeset};
 use proptest::prelude::*;
 use std::collections::BTreeMap;
+use std::time::Duration;
 
 /// Pieces of which texts are made that often read as formulations.
 const PIECES: &[&str] = &[
@@ -228,6 +229,22 @@ fn reads_back(text: &str) -> Result<(), TestCaseError> {
     Ok(())
 }
 
+/// What a text may take of a processor. A second is promised of the page's build; this one checks
+/// overflows besides and knows no optimisation across crates, so it is given four.
+const LIMIT: Duration = Duration::from_secs(4);
+
+/// Does something with a text and sees that it takes no longer than it may.
+fn timed<T>(what: &str, work: impl FnOnce() -> T) -> T {
+    let before = run_time();
+    let done = work();
+    if let (Some(before), Some(after)) = (before, run_time()) {
+        let taken = after.saturating_sub(before);
+        let shown: String = what.chars().take(80).collect();
+        assert!(taken < LIMIT, "{taken:?}: {shown}");
+    }
+    done
+}
+
 /// All that is set of a text, with what holds for every element: a leaf has no children, and
 /// others have as many as their layout takes, and no text.
 fn typesets(text: &str) -> Result<String, TestCaseError> {
@@ -270,7 +287,8 @@ proptest! {
 
     #[test]
     fn pieces_in_any_order_end_without_panic(text in texts()) {
-        let found = match model(&text, &kitchen(), &BTreeMap::new(), &BTreeMap::new()) {
+        let made = timed(&text, || model(&text, &kitchen(), &BTreeMap::new(), &BTreeMap::new()));
+        let found = match made {
             Ok((_, found)) | Err(found) => found,
         };
         prop_assert!(on_boundaries(&text, &found), "{}", shown(&text, &found));
@@ -296,7 +314,7 @@ fn deep_nesting_is_one_error() {
     for open in ["(", "{", "|", "−", "⌊", "x_{", "(¬", "Σ_{i ∈ V} (", "\\frac{", "2^{", "max("]
     {
         let text = format!("minimise\n{}", open.repeat(100_000));
-        let parsed = parse(&text);
+        let parsed = timed(open, || parse(&text));
         assert_eq!(parsed.diagnostics.len(), 1, "{open}: {}", shown(&text, &parsed.diagnostics));
         assert_eq!(parsed.diagnostics[0].code, "syntax.too-deep", "{open}");
     }
@@ -324,9 +342,10 @@ fn noise_and_long_names_end() {
     }
     for prefix in ["", "data\n", "minimise\n", "subject to\n"] {
         let text = format!("{prefix}{noise}");
-        let parsed = parse(&text);
+        let parsed = timed(prefix, || parse(&text));
         assert!(!parsed.diagnostics.is_empty() && parsed.diagnostics.len() <= 200);
-        assert!(on_boundaries(&text, &check(&parsed.tree).1));
+        let (_, found) = timed(prefix, || check(&parsed.tree));
+        assert!(on_boundaries(&text, &found));
     }
     let huge = "(".repeat(5_000_000);
     assert_eq!(parse(&huge).diagnostics[0].code, "syntax.too-long");
@@ -354,11 +373,17 @@ fn no_time_grows_with_the_square_of_a_text() {
         "n∑j=1",
         "\\left. a \\right\\} ",
         "∀ i ∈ V \\quad ",
+        "Let $x = y$ be the first of all of them ",
+        "We say of it that\nall of these words go on\n",
+        "x^{q} ",
+        "[n] × ",
+        "{i,j} ∈ E, ",
+        "x \\ge 0;\\; ",
     ];
     for unit in units {
         for head in ["minimise\n x\nsubject to\n x ≤ 1 ", "data\n"] {
             let text = format!("{head}{}", unit.repeat(400_000 / unit.len()));
-            let parsed = parse(&text);
+            let parsed = timed(unit, || parse(&text));
             assert!(on_boundaries(&text, &parsed.diagnostics), "{unit}");
         }
     }

@@ -5,6 +5,7 @@
 
 use std::panic::catch_unwind;
 use std::thread::{Builder, scope};
+use std::time::Duration;
 
 use hullward_tests_fuzz::mutate::{Draw, mutated};
 use hullward_tests_fuzz::seeds;
@@ -18,7 +19,30 @@ fn cases() -> u64 {
     CASES * times.unwrap_or(1)
 }
 
+/// What a case may take of a processor. A second is promised of the page's build; this one checks
+/// overflows besides and knows no optimisation across crates, so it is given three.
+const LIMIT: Duration = Duration::from_secs(3);
+
+/// How long this thread has run, where Linux tells it: other work on the machine does not count.
+fn run_time() -> Option<Duration> {
+    let told = std::fs::read_to_string("/proc/thread-self/schedstat").ok()?;
+    told.split(' ').next()?.parse().ok().map(Duration::from_nanos)
+}
+
 fn one((name, run): Target, what: &str, bytes: &[u8]) {
+    let before = run_time();
+    outcome((name, run), what, bytes);
+    if let (Some(before), Some(after)) = (before, run_time()) {
+        let taken = after.saturating_sub(before);
+        if taken > LIMIT {
+            let path = std::env::temp_dir().join(format!("hullward-slow-{name}"));
+            let kept = std::fs::write(&path, bytes).map(|()| path.display().to_string());
+            panic!("{name} takes {taken:?} on {what}: {}", kept.unwrap_or_default());
+        }
+    }
+}
+
+fn outcome((name, run): Target, what: &str, bytes: &[u8]) {
     if catch_unwind(|| run(bytes)).is_err() {
         let path = std::env::temp_dir().join(format!("hullward-{name}"));
         let kept = std::fs::write(&path, bytes).is_ok();

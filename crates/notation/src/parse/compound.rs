@@ -60,8 +60,10 @@ impl Parser<'_> {
             match kind {
                 T::Word => {
                     let Some((text, indexed, after)) = self.name_at(i) else { return false };
-                    let index = !indexed || self.is_declared(text) || self.is_index(text, i);
-                    found |= !index;
+                    // one is enough, and looking for an index walks back
+                    if !found {
+                        found = indexed && !self.is_declared(text) && !self.is_index(text, i);
+                    }
                     if found && depth == 0 && self.number_word_at(after) {
                         return true;
                     }

@@ -105,6 +105,12 @@ pub fn exact_row_text(model: &Model, row: &model::Row) -> String {
     }
 }
 
+/// How long this thread has run, where Linux tells it: other work on the machine does not count.
+pub fn run_time() -> Option<std::time::Duration> {
+    let told = std::fs::read_to_string("/proc/thread-self/schedstat").ok()?;
+    told.split(' ').next()?.parse().ok().map(std::time::Duration::from_nanos)
+}
+
 /// All rows of a family.
 pub fn rows_of(model: &Model, family: &str) -> Vec<String> {
     let family = model.families().iter().find(|f| f.name == family).expect("no such family");

@@ -369,6 +369,8 @@ fn no_time_grows_with_the_square_of_a_text() {
         "\\left\\{\\begin{array}",
         "xᵢⱼ",
         "x(A)",
+        "x  (A)",
+        "x_i, ",
         "∑ n",
         "n∑j=1",
         "\\left. a \\right\\} ",

@@ -458,9 +458,11 @@ impl Parser<'_> {
             return word && !matches!(after, T::Underscore | T::Comma) && !after.is_relation();
         }
         let wide = wide && token.gap.has(Gap::WIDE) && !token.gap.has(Gap::NEWLINE);
-        let quantifier = token.kind == T::LeftParen
+        let quantifier = wide
+            && token.kind == T::LeftParen
             && self.tokens[i + 1].kind == T::Word
-            && self.is_index_since(&self.tokens[i + 1].text, (self.at, i));
+            && self
+                .is_index_since(&self.tokens[i + 1].text, (self.at.max(i.saturating_sub(100)), i));
         wide && !quantifier && !token.kind.continues() && !self.goes_on(i - 1)
     }
 }

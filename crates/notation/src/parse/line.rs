@@ -139,7 +139,9 @@ impl Parser<'_> {
         let Some(next) = self.tokens.get(self.at + 1).filter(|_| self.place.counts) else {
             return false;
         };
-        next.kind == T::Word && self.is_index_since(&next.text, (self.first, self.at))
+        next.kind == T::Word
+            && self
+                .is_index_since(&next.text, (self.first.max(self.at.saturating_sub(100)), self.at))
     }
 
     /// A relation with its right operand; `free` is `∈ ℝ`.

@@ -2,7 +2,7 @@
 
 use std::cmp::Ordering;
 
-use super::{Environment, Evaluated, Evaluator, Guard, fail};
+use super::{Element, Environment, Evaluated, Evaluator, Guard, fail};
 use crate::diagnostic::{shapes, subsets};
 use crate::place::Span;
 use crate::plan::Node;
@@ -92,7 +92,24 @@ impl Evaluator {
             let guard = found.map_or(Guard::known(false), |&(e, within)| Guard::member(e, within));
             return Ok(if inside { guard } else { guard.not() });
         }
+        if let Node::Members(_, members) = set {
+            return Ok(Guard::known(self.is_listed(&key, members, env)? == inside));
+        }
         Ok(Guard::known(self.set(set, env)?.contains(&key) == inside))
+    }
+
+    /// Whether a tuple is among these, without making a set of them: δ(i) asks this of every pair.
+    fn is_listed(
+        &self,
+        key: &[Element],
+        members: &[Vec<Node>],
+        env: &mut Environment,
+    ) -> Evaluated<bool> {
+        let mut found = false;
+        for member in members {
+            found |= self.tuple(member, env)? == key;
+        }
+        Ok(found)
     }
 
     fn compare_sets(

@@ -11,6 +11,7 @@ pub(crate) enum Topic {
     Digest,
     Cells,
     Gather,
+    Drift,
     Prove,
 }
 
@@ -25,6 +26,7 @@ impl Topic {
             "digest" => Self::Digest,
             "cells" => Self::Cells,
             "gather" => Self::Gather,
+            "drift" => Self::Drift,
             "prove" => Self::Prove,
             _ => return None,
         })
@@ -42,6 +44,7 @@ pub(crate) fn text(topic: Topic) -> &'static str {
         Topic::Digest => DIGEST,
         Topic::Cells => CELLS,
         Topic::Gather => GATHER,
+        Topic::Drift => DRIFT,
         Topic::Prove => PROVE,
     }
 }
@@ -56,6 +59,7 @@ hullward: rival integer formulations side by side on your own data.
   hullward digest FILE    one line a rival that two machines can compare
   hullward cells FILE     the numbered cells of a growth study, for a batch queue
   hullward gather RESULT… what its cells gave, summed up as one study
+  hullward drift PACK     a regression pack run again, or a new instance against it
   hullward prove LOG      a saved log of a search proved again, leaf by leaf
   hullward help [CALL]    more on one of them
   hullward help CODE      what the code of a complaint means, with an example
@@ -112,6 +116,8 @@ should know goes to standard error.
   --as mps        the rival on the instance. The file is read again and compared with
                   the rival (columns, rows, non-zeros, bound of the relaxation)
                   before it is given. Rows of families on demand are not in it
+  --as tightened  the same with the smallest coefficients and bounds that are proved;
+                  no plan is lost
   --as latex      the model section as a paper prints it (amsmath), which hullward
                   reads back as the same formulation
   --as text       the same in journal notation
@@ -121,6 +127,8 @@ should know goes to standard error.
                   written as one HTML file that prints
   --as markdown   the same record as Markdown
   --as csv        the scenario is run and its results written as a table
+  --as pack       the scenario is run and written with its results as one JSON
+                  object, for hullward drift
   --rival LETTER  which rival; a scenario or link without it holds them all
   --instance N    which of several instances (1 unless given)
 ";
@@ -167,6 +175,17 @@ hullward gather RESULT… [--json]
 
 Takes what hullward run --cell gave and sums it up: the same study, byte for byte, as
 hullward run makes of the whole scenario. Cells that are missing are named.
+";
+
+const DRIFT: &str = "\
+hullward drift PACK [FILE]
+
+Runs a regression pack (hullward write --as pack) again and says what differs from the
+recorded rows, columns, non-zeros, root bounds, optima and powers of ten of coefficients.
+With FILE, a new instance for the same rivals, says which of these lie outside of what
+was recorded over all of its instances.
+
+Exit status: 0 as recorded, or the new instance could be run; 3 a result differs.
 ";
 
 const PROVE: &str = "\

@@ -12,6 +12,7 @@ mod explain;
 mod help;
 mod list;
 mod options;
+mod pack;
 mod progress;
 mod prove;
 mod read;
@@ -62,6 +63,7 @@ fn carry_out(call: &Call, out: &mut dyn Write, err: &mut dyn Write) -> std::io::
         Call::List(id) => list::list(id.as_deref(), out, err),
         Call::Digest(options) => digest::digest(options, out, err),
         Call::Cells(file) => cells::list(file, out, err),
+        Call::Drift(options) => pack::drift(options, out, err),
         Call::Gather(options) => cells::gather(options, out, err),
     }
 }

@@ -19,7 +19,17 @@ pub(crate) enum Call {
     Digest(DigestOptions),
     Cells(String),
     Gather(GatherOptions),
+    Drift(DriftOptions),
     Prove(ProveOptions),
+}
+
+/// How `drift` is asked for.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) struct DriftOptions {
+    /// A pack.
+    pub(crate) pack: String,
+    /// A new instance; without one the pack is run again.
+    pub(crate) file: Option<String>,
 }
 
 /// How `gather` is asked for.
@@ -81,6 +91,8 @@ pub(crate) struct WriteOptions {
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(crate) enum Form {
     Mps,
+    /// The same with the smallest coefficients and bounds that are proved.
+    Tightened,
     Latex,
     Text,
     Scenario,
@@ -91,11 +103,14 @@ pub(crate) enum Form {
     Markdown,
     /// The results as a table.
     Csv,
+    /// The scenario with what its rivals gave, to be run again.
+    Pack,
 }
 
 /// The forms by name.
-const FORMS: [(&str, Form); 8] = [
+const FORMS: [(&str, Form); 10] = [
     ("mps", Form::Mps),
+    ("tightened", Form::Tightened),
     ("latex", Form::Latex),
     ("text", Form::Text),
     ("scenario", Form::Scenario),
@@ -103,6 +118,7 @@ const FORMS: [(&str, Form); 8] = [
     ("report", Form::Report),
     ("markdown", Form::Markdown),
     ("csv", Form::Csv),
+    ("pack", Form::Pack),
 ];
 
 impl Form {
@@ -113,7 +129,7 @@ impl Form {
 
     /// Whether the scenario is run for it.
     pub(crate) fn is_run(self) -> bool {
-        matches!(self, Self::Report | Self::Markdown | Self::Csv)
+        matches!(self, Self::Report | Self::Markdown | Self::Csv | Self::Pack)
     }
 
     fn named(word: &str) -> Result<Self, String> {
@@ -127,8 +143,8 @@ impl Form {
     }
 }
 
-const CALLS: [&str; 9] =
-    ["run", "read", "write", "list", "digest", "cells", "gather", "prove", "help"];
+const CALLS: [&str; 10] =
+    ["run", "read", "write", "list", "digest", "cells", "gather", "drift", "prove", "help"];
 
 /// The call, or what is wrong with the words.
 pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
@@ -149,6 +165,7 @@ pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
         "digest" => digest(rest),
         "cells" => one(rest, "cells").map(Call::Cells),
         "gather" => gather(rest).map(Call::Gather),
+        "drift" => drift(rest).map(Call::Drift),
         "prove" => prove(rest),
         other => Err(unknown("call", other, &CALLS)),
     }
@@ -218,6 +235,15 @@ fn write(words: &[String]) -> Result<WriteOptions, String> {
         return Err(format!("write needs --as and one of {known}"));
     };
     Ok(WriteOptions { file, rival, instance, form, out })
+}
+
+fn drift(words: &[String]) -> Result<DriftOptions, String> {
+    match words {
+        [word, ..] if is_option(word) => Err(unknown("option", word, &[])),
+        [pack] => Ok(DriftOptions { pack: pack.clone(), file: None }),
+        [pack, file] => Ok(DriftOptions { pack: pack.clone(), file: Some(file.clone()) }),
+        _ => Err("drift needs a pack, and a new instance: hullward drift PACK [FILE]".to_owned()),
+    }
 }
 
 fn gather(words: &[String]) -> Result<GatherOptions, String> {
@@ -344,7 +370,7 @@ mod tests {
         assert!(call("rum a").expect_err("wrong").contains("did you mean run?"));
         let refused = call("write a --as pdf").expect_err("refused");
         assert!(
-            refused.contains("there are mps, latex, text, scenario, link, report"),
+            refused.contains("there are mps, tightened, latex, text, scenario, link, report"),
             "{refused}"
         );
         assert!(call("write a --as tex").expect_err("wrong").contains("did you mean text?"));

@@ -14,6 +14,7 @@ use report::decision::{self, Evidence};
 
 use crate::ending::Ending;
 use crate::options::Form;
+use crate::pack;
 use crate::run::{run_one, run_study};
 
 /// The record of a scenario in one of its forms, and how the runs ended; rivals that could not be run
@@ -35,6 +36,9 @@ pub(crate) fn record(
             }
             results.push(one);
         }
+    }
+    if form == Form::Pack {
+        return Ok((pack::text(scenario, &results), ending));
     }
     if form == Form::Csv {
         return Ok((csv(&results), ending));

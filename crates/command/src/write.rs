@@ -63,6 +63,9 @@ impl Job<'_> {
             },
             (_, (_, None)) => return self.wrong(&self.which(), err).map(Err),
             (Form::Mps, (instance, Some(rival))) => engine::mps(self.scenario, (instance, rival)),
+            (Form::Tightened, (instance, Some(rival))) => {
+                engine::tightened(self.scenario, (instance, rival))
+            }
             (Form::Text, (_, Some(rival))) => engine::notation_text(self.scenario, rival),
             (_, (_, Some(rival))) => engine::latex(self.scenario, rival),
         };

@@ -3,16 +3,23 @@
 
 mod compare;
 
+use std::collections::BTreeMap;
+
 use model::mps as format;
 use record::handover::{Form, Written};
 use record::message::{Complaint, LaneJob, Reply};
 use record::results::ErrorReport;
-use record::scenario::{Rival, Scenario};
+use record::scenario::{Rival, Scenario, Study};
+use record::study::Report;
 
 use crate::fault::fault;
 use crate::load::{Loaded, formulation, load};
 use crate::map::of_diagnostic;
+use crate::studies::StudyRun;
 use compare::compare;
+
+/// Slices of a study that is made to its end, in non-zeros touched.
+const SLICE: u64 = 2_000_000;
 
 /// A text to hand over.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -57,6 +64,38 @@ pub fn mps(scenario: &Scenario, place: (usize, usize)) -> Result<HandOver, Refus
     notes.extend(warnings.into_iter().map(|warning| warning.message));
     notes.extend(compare(&model, &again).map_err(Refusal::Broken)?);
     Ok(HandOver { text: written.text, notes, complaints })
+}
+
+/// A rival on an instance with the smallest coefficients and bounds that are proved, as MPS: see
+/// [`study::tightening`].
+///
+/// # Errors
+/// A rival that cannot be made, or of which nothing can be made tighter.
+pub fn tightened(scenario: &Scenario, place: (usize, usize)) -> Result<HandOver, Refusal> {
+    let Loaded { complaints, .. } = load(scenario, place)?;
+    let rivals = scenario.rivals.get(place.1).cloned().into_iter().collect();
+    let alone = Scenario { rivals, ..scenario.clone() };
+    let study = Study { kind: "tightening".to_owned(), fields: BTreeMap::new() };
+    let mut run = StudyRun::new(&alone, place.0, &study);
+    while !run.advance(SLICE) {}
+    let Some(Report::Tightening(found)) = run.take().into_iter().next() else {
+        return Err(fault("rival", "it cannot be tightened").into());
+    };
+    match found.rivals.into_iter().next() {
+        Some(found) if !found.model.is_empty() => {
+            let changed: u32 = found.families.iter().map(|one| one.tightened_by_relaxation).sum();
+            let bounds = found.bounds;
+            let notes = vec![format!(
+                "coefficients of rows made smaller: {changed}; bounds made tighter: {bounds}"
+            )];
+            Ok(HandOver { text: found.model, notes, complaints })
+        }
+        _ => {
+            let why =
+                "no coefficient and no bound can be made tighter, or rows on demand would be lost";
+            Err(fault("rival", why).into())
+        }
+    }
 }
 
 /// The journal notation of a rival, in one spelling.

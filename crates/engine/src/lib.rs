@@ -40,7 +40,7 @@ mod worker;
 pub use audit::LogAudit;
 pub use digest::log_digest;
 pub use explain::{explained, explanation};
-pub use handover::{HandOver, Refusal, latex, mps, notation_text};
+pub use handover::{HandOver, Refusal, latex, mps, notation_text, tightened};
 pub use load::{describe, prepare};
 pub use mps::{looks_like_mps, mps_report};
 pub use readings::instance_report;

@@ -12,8 +12,19 @@ use crate::load::{Loaded, formulation, load, states};
 use crate::readings::Readings;
 
 /// The kinds of study there are.
-pub const KINDS: [&str; 8] =
-    ["ladder", "families", "equivalence", "order", "tightening", "cuts", "numerics", "growth"];
+pub const KINDS: [&str; 11] = [
+    "ladder",
+    "families",
+    "equivalence",
+    "order",
+    "tightening",
+    "cuts",
+    "numerics",
+    "growth",
+    "infeasibility",
+    "symmetry",
+    "variability",
+];
 
 /// A study on its way.
 #[derive(Debug)]
@@ -93,6 +104,17 @@ fn begun(
             "cuts" => vec![Report::Cuts(study::cuts::cuts(desk, subjects, plan).await)],
             "numerics" => {
                 vec![Report::Numerics(study::numerics::numerics(desk, subjects, plan).await)]
+            }
+            "infeasibility" => {
+                let found = study::infeasibility::infeasibility(desk, subjects, plan).await;
+                vec![Report::Infeasibility(found)]
+            }
+            "symmetry" => {
+                vec![Report::Symmetry(study::symmetry::symmetry(desk, subjects, plan).await)]
+            }
+            "variability" => {
+                let found = study::variability::variability(desk, subjects, plan).await;
+                vec![Report::Variability(Box::new(found))]
             }
             "growth" => {
                 let growth = study::growth::growth(desk, subjects, plan, cell).await;
@@ -185,6 +207,7 @@ fn plan(scenario: &Scenario, study: &Study) -> Result<Plan, String> {
             "seed" => plan.seed = u64::from(whole(name, field)?),
             "duels" => plan.duels = whole(name, field)?,
             "plans" => plan.plans = whole(name, field)?,
+            "orders" => plan.orders = whole(name, field)?,
             "rows" => plan.rows = whole(name, field)?,
             "sizes" => {
                 plan.sizes = list(name, field, whole)?;
@@ -196,8 +219,8 @@ fn plan(scenario: &Scenario, study: &Study) -> Result<Plan, String> {
             "shared" => plan.shared = list(name, field, text)?,
             "mutants" => plan.mutants = flag(name, field)?,
             _ => {
-                let known = "nodes, seed, duels, plans, rows, sizes, seeds, classes, production, \
-                             shared, mutants";
+                let known = "nodes, seed, duels, plans, rows, orders, sizes, seeds, classes, \
+                             production, shared, mutants";
                 return Err(format!("the study has no \"{name}\"; there are {known}"));
             }
         }

@@ -29,6 +29,7 @@ mod labels;
 mod model;
 pub mod mps;
 mod number;
+mod reorder;
 mod statistics;
 mod subset;
 mod variant;

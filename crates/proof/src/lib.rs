@@ -48,6 +48,7 @@ mod vertex;
 pub use basis::{Standing, Standings};
 pub use bound::{bound, infeasible, quick_bound};
 pub use certify::{Budget, Certifier, ExactMultipliers, Progress, Wish};
+pub use multipliers::simple_fraction;
 pub use point::{Place, Point, Violation, violations};
 pub use refine::Residual;
 pub use rows::{Bounds, ExactRows, bounds_of};

@@ -195,8 +195,9 @@ pub(crate) fn has_side(rows: &ExactRows, index: usize, sign: Ordering) -> bool {
 }
 
 /// The first convergent p/q of the continued fraction of `value` that is within the
-/// tolerance; `None` when q grows over the limit first.
-pub(crate) fn simple_fraction(value: f64) -> Option<(i64, i64)> {
+/// tolerance, 10⁻⁹ relative to 1 + |value|; `None` when q grows over the limit, 5,000, first.
+#[must_use]
+pub fn simple_fraction(value: f64) -> Option<(i64, i64)> {
     let size = value.abs();
     if size == 0.0 {
         return Some((0, 1));

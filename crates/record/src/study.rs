@@ -5,10 +5,13 @@ mod cuts;
 mod equivalence;
 mod families;
 mod growth;
+mod infeasibility;
 mod ladder;
 mod numerics;
 mod order;
+mod symmetry;
 mod tightening;
+mod variability;
 
 use serde::{Deserialize, Serialize, Serializer};
 
@@ -18,10 +21,13 @@ pub use equivalence::{
 };
 pub use families::{Families, FamilyShare, IntegralityShare, RivalFamilies};
 pub use growth::{Cell, Fit, Growth, GrowthPair, SizeMean};
+pub use infeasibility::{ConflictRow, Infeasibility, Repair, RivalInfeasibility, Standing};
 pub use ladder::{Ladder, RivalLadder, Rung};
 pub use numerics::{FamilyNumerics, Numerics, RivalNumerics};
-pub use order::{Certificate, Order, OrderLevel, Relation};
+pub use order::{Certificate, Order, OrderLevel, Relation, RowProof, SystemRow};
+pub use symmetry::{Generator, Interchangeable, RivalSymmetry, Symmetry};
 pub use tightening::{FamilyTightening, RivalTightening, Tightening};
+pub use variability::{RivalVariability, Run, Variability, VariabilityPair};
 
 /// What one study found, or one pair of rivals in it.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
@@ -42,6 +48,12 @@ pub enum Report {
     Cuts(CutAdvice),
     /// How rivals compare as instances grow.
     Growth(Box<Growth>),
+    /// Rows that cannot hold together, and the cheapest way to relax them.
+    Infeasibility(Infeasibility),
+    /// What a model does not tell apart.
+    Symmetry(Symmetry),
+    /// How much a search varies when nothing but the order of rows and columns changes.
+    Variability(Box<Variability>),
     /// A study that could not be made, and why.
     Left {
         /// Its kind.
@@ -64,6 +76,9 @@ impl Report {
             Self::Numerics(_) => "numerics",
             Self::Cuts(_) => "cuts",
             Self::Growth(_) => "growth",
+            Self::Infeasibility(_) => "infeasibility",
+            Self::Symmetry(_) => "symmetry",
+            Self::Variability(_) => "variability",
             Self::Left { kind, .. } => kind,
         }
     }
@@ -93,6 +108,9 @@ impl Serialize for Line<'_> {
             Report::Numerics(report) => self.named(report, serializer),
             Report::Cuts(report) => self.named(report, serializer),
             Report::Growth(report) => self.named(report.as_ref(), serializer),
+            Report::Infeasibility(report) => self.named(report, serializer),
+            Report::Symmetry(report) => self.named(report, serializer),
+            Report::Variability(report) => self.named(report.as_ref(), serializer),
             Report::Left { why, .. } => self.named(&LeftOut { left_out: why }, serializer),
         }
     }

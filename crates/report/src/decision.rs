@@ -10,8 +10,8 @@ use record::results::{Proof, RivalResult, Status};
 use record::scenario::{FamilyState, Rival, Scenario, letter};
 use record::study::Report;
 
-use crate::number::{count, of, percent, short};
-use crate::study::{Section, Table, sections};
+use crate::number::{count, full, of, percent, short};
+use crate::study::{Section, Table, and, overview, sections};
 
 /// Stands at the end of every record.
 const CAUTION: &str = "A plan that comes out of a model is a decision aid; driving, working-time, \
@@ -45,6 +45,8 @@ enum Block {
     Text(String),
     List(Vec<String>),
     Table(Table),
+    /// A drawing, as SVG of our own.
+    Figure(String),
     Code(String),
 }
 
@@ -73,6 +75,7 @@ fn blocks(evidence: &Evidence<'_>) -> Vec<Block> {
     }
     if !evidence.studies.is_empty() {
         out.push(Block::Heading("Evidence".to_owned()));
+        out.extend(orders(evidence));
         for (instance, report) in evidence.studies {
             out.extend(sections(report).into_iter().flat_map(|found| section(instance, found)));
         }
@@ -127,6 +130,7 @@ fn named(evidence: &Evidence<'_>, place: usize, rival: &Rival) -> String {
 /// The sentences of the studies, and for each rival what its search came to.
 fn findings(evidence: &Evidence<'_>) -> Vec<String> {
     let mut out: Vec<String> = evidence.results.iter().filter_map(outcome).collect();
+    out.extend(best_known(evidence));
     for (_, report) in evidence.studies {
         let verdicts =
             matches!(report, Report::Equivalence(_) | Report::Order(_) | Report::Growth(_));
@@ -136,6 +140,21 @@ fn findings(evidence: &Evidence<'_>) -> Vec<String> {
         }
     }
     out
+}
+
+/// The value that the scenario gives, and how far each root bound is from it.
+fn best_known(evidence: &Evidence<'_>) -> Option<String> {
+    let best = evidence.scenario.run.best_known.filter(|_| evidence.results.len() > 1)?;
+    let away = |result: &RivalResult| {
+        let bound = result.root.as_ref()?.bound.filter(|_| best != 0.0)?;
+        Some(format!("{} {}", result.rival, percent((best - bound).abs() / best.abs())))
+    };
+    let away: Vec<String> = evidence.results.iter().filter_map(away).collect();
+    let best = full(best);
+    Some(format!(
+        "The best value known is {best}, as the scenario says; root bounds are away from it: {}.",
+        and(&away)
+    ))
 }
 
 /// What a rival came to on an instance, with the interval in which the best plan lies.
@@ -208,10 +227,25 @@ fn row(result: &RivalResult) -> Vec<String> {
     ]
 }
 
+/// The order of all rivals, instance by instance.
+fn orders(evidence: &Evidence<'_>) -> Vec<Block> {
+    let mut instances: Vec<&String> =
+        evidence.studies.iter().map(|(instance, _)| instance).collect();
+    instances.dedup();
+    let mut out = Vec::new();
+    for instance in instances {
+        let own = evidence.studies.iter().filter(|(of, _)| of == instance);
+        let own: Vec<&Report> = own.map(|(_, report)| report).collect();
+        out.extend(overview(&own).into_iter().flat_map(|found| section(instance, found)));
+    }
+    out
+}
+
 fn section(instance: &str, section: Section) -> Vec<Block> {
     let on = if instance.is_empty() { String::new() } else { format!(" ({instance})") };
     let mut out = vec![Block::Minor(format!("{}{on}", section.heading))];
     out.extend(section.verdict.into_iter().map(Block::Text));
+    out.extend(section.figure.map(|figure| Block::Figure(figure.svg())));
     out.extend(section.table.map(Block::Table));
     out.extend(section.notes.into_iter().map(Block::Text));
     out

@@ -20,6 +20,7 @@
 
 pub mod audit;
 pub mod axis;
+pub mod certificate;
 pub mod csv;
 pub mod decision;
 pub mod difference;

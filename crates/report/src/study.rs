@@ -5,14 +5,19 @@ mod cuts;
 mod equivalence;
 mod families;
 mod growth;
+mod hasse;
+mod infeasibility;
 mod ladder;
 mod numerics;
 mod order;
+mod symmetry;
 mod tightening;
+mod variability;
 
 use record::study::Report;
 
 use crate::number::short;
+pub use hasse::{Figure, overview};
 
 /// A part of the evidence.
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
@@ -21,6 +26,8 @@ pub struct Section {
     pub heading: String,
     /// What it comes to, in sentences.
     pub verdict: Vec<String>,
+    /// A drawing of it; its words stand in the verdict too.
+    pub figure: Option<Figure>,
     /// Its figures.
     pub table: Option<Table>,
     /// What a reader must know beside.
@@ -57,11 +64,32 @@ pub fn sections(report: &Report) -> Vec<Section> {
         Report::Numerics(report) => numerics::sections(report),
         Report::Cuts(report) => cuts::sections(report),
         Report::Growth(report) => growth::sections(report),
+        Report::Infeasibility(report) => infeasibility::sections(report),
+        Report::Symmetry(report) => symmetry::sections(report),
+        Report::Variability(report) => variability::sections(report),
         Report::Left { kind, why } => {
             let verdict = vec![format!("left out: {why}")];
             vec![Section { heading: format!("Study: {kind}"), verdict, ..Section::default() }]
         }
     }
+}
+
+/// Models that came out of a study, each with the words of a button that makes it a rival, in MPS.
+#[must_use]
+pub fn derived(report: &Report) -> Vec<(String, String)> {
+    let all: Vec<(String, &String)> = match report {
+        Report::Tightening(found) => {
+            let words = |letter: &str| format!("Add {letter} tightened as a rival");
+            found.rivals.iter().map(|one| (words(&one.rival), &one.model)).collect()
+        }
+        Report::Symmetry(found) => {
+            let words = |letter: &str| format!("Add {letter} with its order rows as a rival");
+            found.rivals.iter().map(|one| (words(&one.rival), &one.with_order)).collect()
+        }
+        _ => Vec::new(),
+    };
+    let some = all.into_iter().filter(|(_, text)| !text.is_empty());
+    some.map(|(words, text)| (words, text.clone())).collect()
 }
 
 /// A value that may be missing.
@@ -70,7 +98,7 @@ fn value(value: Option<f64>) -> String {
 }
 
 /// `A, B and C`.
-fn and(words: &[String]) -> String {
+pub(crate) fn and(words: &[String]) -> String {
     match words {
         [] => String::new(),
         [one] => one.clone(),

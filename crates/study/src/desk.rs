@@ -33,6 +33,8 @@ pub struct Solved {
     pub bound: Option<f64>,
     /// The same as far as exact arithmetic proves it.
     pub checked_bound: Option<Number>,
+    /// Whether that is the exact optimum of the relaxation.
+    pub exact: bool,
     /// The values of the relaxation.
     pub point: Vec<f64>,
     /// How the search ended; `Running` where none was asked for.
@@ -51,6 +53,8 @@ pub struct Solved {
     pub iterations: u64,
     /// Non-zeros touched.
     pub work: u64,
+    /// The rows of a Farkas ray with their multipliers, where the relaxation has no point.
+    pub ray: Vec<(String, f64)>,
     /// The bound with general cuts, where some were asked for, and how many there are.
     pub cuts: Option<(f64, u32)>,
 }
@@ -80,13 +84,38 @@ impl Desk {
         let searched = settings.search;
         let mut search = Search::new(Rc::clone(model), settings);
         poll_fn(|_| self.go_on(&mut search, searched)).await;
-        self.solved.set(self.solved.get() + 1);
+        self.count();
         solved(&search, searched)
     }
 
     /// The relaxation alone.
     pub async fn relax(&self, model: &Rc<Model>) -> Solved {
         self.solve(model, Settings { search: false, ..Settings::default() }).await
+    }
+
+    /// The relaxation, and an estimate of the condition of its last basis.
+    pub async fn conditioned(&self, model: &Rc<Model>) -> (Solved, Option<f64>) {
+        let settings = Settings { search: false, ..Settings::default() };
+        let mut search = Search::new(Rc::clone(model), settings);
+        poll_fn(|_| self.go_on(&mut search, false)).await;
+        self.count();
+        let condition = search.condition_estimate();
+        self.spend(model.row_count() as u64).await;
+        (solved(&search, false), condition)
+    }
+
+    /// The members of families over subsets that the relaxation of a model needs.
+    pub(crate) async fn members(&self, model: &Rc<Model>) -> Vec<(String, model::Row)> {
+        let settings = Settings { search: false, ..Settings::default() };
+        let mut search = Search::new(Rc::clone(model), settings);
+        poll_fn(|_| self.go_on(&mut search, false)).await;
+        self.count();
+        search.members()
+    }
+
+    /// One more model is solved.
+    pub(crate) fn count(&self) {
+        self.solved.set(self.solved.get() + 1);
     }
 
     /// Counts work that is done at once, and rests where the slice is over.
@@ -136,6 +165,7 @@ fn solved(search: &Search, searched: bool) -> Solved {
         root: root.map_or(summary.status, |root| root.status),
         bound: root.and_then(|root| root.bound),
         checked_bound: root.and_then(|root| root.checked_bound.clone()),
+        exact: root.is_some_and(|root| root.exact),
         point: root.map_or_else(Vec::new, |root| root.x.clone()),
         status: if searched { summary.status } else { Status::Running },
         tree_bound: summary.bound.filter(|_| searched),
@@ -145,6 +175,7 @@ fn solved(search: &Search, searched: bool) -> Solved {
         nodes: summary.nodes,
         iterations: summary.iterations,
         work: summary.work,
+        ray: root.map_or_else(Vec::new, |root| root.ray.clone()),
         cuts: cuts.and_then(|cuts| Some((cuts.bound?, added(cuts)))),
     }
 }

@@ -6,6 +6,8 @@
 //! by solving anew. A dual share would not do: it is 0 for every family with right-hand side 0, and
 //! not unique on a degenerate optimum.
 
+mod dual;
+
 use std::rc::Rc;
 
 use model::{FamilyId, FamilyState, Model, VariableId};
@@ -54,6 +56,10 @@ async fn of_rival(desk: &Desk, subject: &Subject, plan: &Plan) -> RivalFamilies 
         table.each(&mut out).await;
     }
     out.solved = table.solved;
+    for (place, &id) in ids.iter().enumerate() {
+        desk.say(format!("{}: the dual share of {}", subject.letter, out.families[place].name));
+        out.families[place].dual = dual::share(desk, model, (id, whole)).await;
+    }
     if !subject.relaxation {
         out.integrality = integrality(desk, subject, plan).await;
     }

@@ -9,17 +9,23 @@
 //! | [`mod@order`] | which of two relaxations is stronger, and how far that is known |
 //! | [`mod@tightening`] | how small the coefficients of switches can be |
 //! | [`mod@growth`] | how rivals compare as instances grow |
+//! | [`mod@infeasibility`] | which rows cannot hold together, and the cheapest way to relax them |
+//! | [`mod@symmetry`] | what a model does not tell apart, and rows that would |
+//! | [`mod@variability`] | how much a search varies with the order of rows and columns, a bound with the root |
 //! | [`mod@numerics`] | how far coefficients range, and what leaks |
 //!
 //! A study takes [`Subject`]s, works at a [`Desk`] and gives a report of [`record::study`]; it runs in
 //! slices as a [`Running`]. No study reads a clock; limits are counts of nodes, rows and trials.
 
+mod claims;
 pub mod court;
 pub mod cuts;
 pub mod desk;
 pub mod families;
 pub mod growth;
+pub mod infeasibility;
 pub mod ladder;
+mod maximise;
 pub mod numerics;
 pub mod order;
 pub mod plan;
@@ -27,7 +33,9 @@ mod propagate;
 pub mod shared;
 mod statistics;
 pub mod subject;
+pub mod symmetry;
 pub mod tightening;
+pub mod variability;
 mod words;
 
 pub use desk::{Desk, Running, Solved};

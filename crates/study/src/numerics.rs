@@ -1,9 +1,11 @@
-//! How far coefficients range, and how much can leak through them. Closed forms over the exact
-//! model; thresholds are common practice and named.
+//! How far coefficients range, how much can leak through them, how ill-conditioned the optimal basis
+//! is, and what exact arithmetic makes of the bound and of the best plan. Thresholds are common
+//! practice and named.
 
 use std::rc::Rc;
 
-use model::{ColumnId, Model, NumberId, RowId};
+use model::{ColumnId, Model, NumberId, RowId, nearest_f64};
+use proof::Point;
 use record::study::{FamilyNumerics, Numerics, RivalNumerics};
 
 use crate::desk::Desk;
@@ -15,18 +17,46 @@ use crate::words::short;
 const INTEGRALITY: f64 = 1e-6;
 /// A leak of more can change a plan of whole units (common practice).
 const MOST_LEAK: f64 = 1e-2;
+/// A basis with a larger condition may lose half of the sixteen digits (common practice).
+const MOST_CONDITION: f64 = 1e8;
+/// A plan that misses a row by more is not one (the tolerance of the kernel).
+const MOST_VIOLATION: f64 = 1e-6;
 /// Ratios of coefficients over this are said (common practice).
 const MOST_RATIO: f64 = 1e6;
 
 /// Studies the coefficients of each rival.
-pub async fn numerics(desk: Rc<Desk>, subjects: Vec<Subject>, _: Plan) -> Numerics {
+pub async fn numerics(desk: Rc<Desk>, subjects: Vec<Subject>, plan: Plan) -> Numerics {
     let mut rivals = Vec::new();
     for subject in &subjects {
         desk.say(format!("{}: its coefficients", subject.letter));
         desk.spend(subject.model.row_count() as u64).await;
-        rivals.push(of_rival(subject));
+        let mut rival = of_rival(subject);
+        rechecked(&desk, subject, &plan, &mut rival).await;
+        rival.verdicts = verdicts(&rival);
+        rivals.push(rival);
     }
     Numerics { rivals }
+}
+
+/// The relaxation and the best plan, again in exact arithmetic.
+async fn rechecked(desk: &Desk, subject: &Subject, plan: &Plan, out: &mut RivalNumerics) {
+    let model = &subject.model;
+    desk.say(format!("{}: its relaxation in exact arithmetic", subject.letter));
+    let (solved, condition) = desk.conditioned(model).await;
+    out.condition = condition.filter(|_| solved.bound.is_some());
+    out.bound = solved.bound;
+    let proved = solved.checked_bound.as_ref().map(nearest_f64);
+    out.bound_off = solved.bound.zip(proved).map(|(bound, proved)| (bound - proved).abs());
+    out.exact = solved.exact;
+    if subject.relaxation {
+        return;
+    }
+    desk.say(format!("{}: its best plan in exact arithmetic", subject.letter));
+    let solved = desk.solve(model, plan.search()).await;
+    if !solved.solution.is_empty() {
+        desk.spend(model.row_count() as u64).await;
+        out.plan_off = Some(nearest_f64(&Point::new(model, &solved.solution).worst()));
+    }
 }
 
 fn of_rival(subject: &Subject) -> RivalNumerics {
@@ -52,7 +82,11 @@ fn of_rival(subject: &Subject) -> RivalNumerics {
             range.join(own);
             let (lower, upper) = model.row_sides(row);
             [lower, upper].into_iter().flatten().for_each(|id| sides.note(size(model, id)));
-            leak(model, row, &mut out.leak);
+            let opened = leak(model, row);
+            out.leak_in_all += opened;
+            if opened > out.leak.0 {
+                out.leak = (opened, model.row_name(row));
+            }
         }
         matrix.join(range);
         let (name, range) = (family.name.clone(), range.pair());
@@ -61,7 +95,6 @@ fn of_rival(subject: &Subject) -> RivalNumerics {
     out.families.retain(|family| family.range.1 > 0.0);
     (out.matrix, out.sides, out.costs) = (matrix.pair(), sides.pair(), costs(model).pair());
     out.column_ratio = worst_column(model, &columns);
-    out.verdicts = verdicts(&out);
     out
 }
 
@@ -126,16 +159,15 @@ fn worst_column(model: &Model, columns: &[Range]) -> (f64, String) {
 
 /// The most by which a binary that is off by the tolerance opens a row, in units of the row's
 /// smallest coefficient on another column.
-fn leak(model: &Model, row: RowId, worst: &mut (f64, String)) {
+fn leak(model: &Model, row: RowId) -> f64 {
     let (mut switch, mut rest) = (Range::default(), Range::default());
     for &(column, a) in model.row_entries(row) {
         let range = if model.is_binary(column) { &mut switch } else { &mut rest };
         range.note(size(model, a));
     }
-    let (Some((_, largest)), Some((smallest, _))) = (switch.0, rest.0) else { return };
-    let opened = largest * INTEGRALITY / smallest;
-    if opened > worst.0 {
-        *worst = (opened, model.row_name(row));
+    match (switch.0, rest.0) {
+        (Some((_, largest)), Some((smallest, _))) => largest * INTEGRALITY / smallest,
+        _ => 0.0,
     }
 }
 
@@ -146,6 +178,18 @@ fn verdicts(of: &RivalNumerics) -> Vec<String> {
         verdicts.push(format!(
             "{row} can leak {}: its binary may be 10⁻⁶ off and still count as whole",
             short(*leak)
+        ));
+    }
+    if let Some(condition) = of.condition.filter(|condition| *condition > MOST_CONDITION) {
+        verdicts.push(format!(
+            "the basis at the optimum has a condition of about {}: a bound may lose digits",
+            short(condition)
+        ));
+    }
+    if let Some(off) = of.plan_off.filter(|off| *off > MOST_VIOLATION) {
+        verdicts.push(format!(
+            "its best plan, with whole values, misses a row by {} in exact arithmetic",
+            short(off)
         ));
     }
     for (what, (ratio, place)) in [("row", &of.row_ratio), ("column", &of.column_ratio)] {

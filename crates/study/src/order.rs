@@ -3,18 +3,21 @@
 //! A theorem is taken from the catalogue, along chains of them, where both rivals are as published.
 //! Else it is certified on this instance where every row and bound of one rival, in the shared
 //! variables, holds over the whole relaxation of the other: one linear program a row, whose bound
-//! is proved in exact arithmetic. A row that does not hold is an objective on which the other rival
-//! is weaker. Else the bounds are what was observed.
+//! is proved by exact multipliers, which are handed out. A row that does not hold is an objective on
+//! which the other rival is weaker. Else the bounds are what was observed.
+
+mod certificate;
 
 use std::collections::{BTreeMap, VecDeque};
 use std::rc::Rc;
 
-use model::{ColumnId, Model, Number, NumberId, RowId, Sense, nearest_f64};
+use model::nearest_f64;
 use record::study::{Certificate, Order, OrderLevel, Relation};
 
+use crate::claims::{Claim, claims, obstacle};
 use crate::desk::Desk;
+use crate::maximise::Maximiser;
 use crate::plan::Plan;
-use crate::propagate::sides;
 use crate::shared::{Shared, shared};
 use crate::subject::Subject;
 use crate::words::{direction, of, same};
@@ -68,124 +71,55 @@ impl Pair<'_> {
         order
     }
 
-    /// Whether the relaxation of `inner`, in the shared variables, lies within that of `outer`.
+    /// Whether the relaxation of `inner`, in the shared variables, lies within that of `outer`: row
+    /// by row where the latter lives in the shared variables, else by an affine map.
     async fn within(&self, inner: &Subject, outer: &Subject, shared: &Shared) -> Certificate {
-        let why = match obstacle(inner, outer, shared) {
-            Some(why) => why,
-            None => return self.rows_hold(inner, outer, shared).await,
-        };
-        Certificate { why, ..Certificate::default() }
+        let refused = |why| Certificate { why, ..Certificate::default() };
+        if let Some(why) = obstacle(inner, outer, shared) {
+            return refused(why);
+        }
+        match claims(outer, shared, &inner.model, self.plan.rows) {
+            Ok(claims) => self.rows_hold([inner, outer], &claims).await,
+            Err(why) => refused(why),
+        }
     }
 
-    async fn rows_hold(&self, inner: &Subject, outer: &Subject, shared: &Shared) -> Certificate {
-        let back: BTreeMap<ColumnId, ColumnId> =
-            shared.pairs.iter().map(|&(inner, outer)| (outer, inner)).collect();
-        let claims = claims(&outer.model, &back, &inner.model);
-        let mut out = Certificate::default();
-        if claims.len() > self.plan.rows as usize {
-            out.why = format!("more than {} to maximise", of(self.plan.rows, "row"));
-            return out;
-        }
-        out.rows = u32::try_from(claims.len()).unwrap_or(u32::MAX);
+    async fn rows_hold(&self, [inner, outer]: [&Subject; 2], claims: &[Claim]) -> Certificate {
+        let mut out = Certificate {
+            rows: u32::try_from(claims.len()).unwrap_or(u32::MAX),
+            ..Certificate::default()
+        };
+        let mut maximiser = Maximiser::new(self.desk, &inner.model);
+        let mut proofs = Vec::new();
         for (place, claim) in claims.iter().enumerate() {
-            let (inner_letter, outer_letter) = (&inner.letter, &outer.letter);
             self.desk.say(format!(
-                "row {} of {} of {outer_letter} over the relaxation of {inner_letter}",
+                "row {} of {} of {} over the relaxation of {}",
                 place + 1,
-                claims.len()
+                claims.len(),
+                outer.letter,
+                inner.letter
             ));
-            let priced = inner.model.priced(Sense::Maximise, &claim.entries);
-            let solved = self.desk.relax(&Rc::new(priced)).await;
-            let over = solved.bound.map(|bound| bound - nearest_f64(&claim.side));
-            if over.is_none_or(|over| over > VIOLATED) && !solved.is_infeasible() {
+            let most = maximiser.most(&claim.entries, &claim.side).await;
+            let over = most.value.map(|value| value - nearest_f64(&claim.side));
+            if over.is_none_or(|over| over > VIOLATED) && !most.nothing {
                 out.holds = Some(false);
                 out.witness.clone_from(&claim.name);
                 out.violation = over;
+                certificate::witness(&mut out, &inner.model, (claim, &most.point));
                 return out;
             }
-            let proved = solved.checked_bound.as_ref().is_some_and(|bound| *bound <= claim.side);
-            out.proved += u32::from(proved || solved.is_infeasible());
+            let proof = most.proof.filter(|(_, bound)| *bound <= claim.side);
+            out.proved += u32::from(proof.is_some());
+            proofs.extend(proof.map(|(multipliers, _)| (claim, multipliers)));
         }
         out.holds = (out.proved == out.rows).then_some(true);
-        if out.holds.is_none() {
+        if out.holds.is_some() {
+            certificate::put(&mut out, &inner.model, (&maximiser, &proofs));
+        } else {
             out.why = "exact arithmetic did not prove every row".to_owned();
         }
         out
     }
-}
-
-/// Why one relaxation cannot be held against the rows of the other.
-fn obstacle(inner: &Subject, outer: &Subject, shared: &Shared) -> Option<String> {
-    if shared.pairs.is_empty() {
-        return Some("they share no variable".to_owned());
-    }
-    if !outer.model.subset_families().is_empty() {
-        return Some(format!("{} has rows on demand, which cannot all be written", outer.letter));
-    }
-    if shared.pairs.len() < outer.model.columns().len() {
-        return Some(format!("{} has variables of its own", outer.letter));
-    }
-    if inner.model.sense() != outer.model.sense() || !same_costs(inner, outer, shared) {
-        return Some("their objectives differ in the shared variables".to_owned());
-    }
-    None
-}
-
-/// Whether both have the same objective, and it is in the shared variables alone.
-fn same_costs(inner: &Subject, outer: &Subject, shared: &Shared) -> bool {
-    let cost = |model: &Model, column: ColumnId| -> Number {
-        model.numbers().exact(model.columns()[column.index()].cost).clone()
-    };
-    let equal = shared
-        .pairs
-        .iter()
-        .all(|&(left, right)| cost(&inner.model, left) == cost(&outer.model, right));
-    let paired: std::collections::BTreeSet<ColumnId> =
-        shared.pairs.iter().map(|&(left, _)| left).collect();
-    let columns = (0..inner.model.columns().len()).map(ColumnId::from_index);
-    let mut rest = columns.filter(|column| !paired.contains(column));
-    equal
-        && rest
-            .all(|column| cost(&inner.model, column).is_zero() || shared.only[0].contains(&column))
-}
-
-/// A row or bound of one rival in the columns of the other: `Σ a x ≤ side`.
-struct Claim {
-    name: String,
-    entries: Vec<(ColumnId, Number)>,
-    side: Number,
-}
-
-fn claims(outer: &Model, to: &BTreeMap<ColumnId, ColumnId>, inner: &Model) -> Vec<Claim> {
-    let mut out = Vec::new();
-    let rows = (0..outer.row_count()).map(RowId::from_index).filter(|&row| outer.row_is_in(row));
-    for row in rows {
-        for (half, _) in sides(outer, row) {
-            let entries = half.entries.into_iter().filter_map(|(c, a)| Some((*to.get(&c)?, a)));
-            let (name, entries) = (outer.row_name(row), entries.collect());
-            out.push(Claim { name, entries, side: half.side });
-        }
-    }
-    for (index, column) in outer.columns().iter().enumerate() {
-        let id = ColumnId::from_index(index);
-        let Some(&own) = to.get(&id) else { continue };
-        let exact = |model: &Model, id: NumberId| model.numbers().exact(id).clone();
-        let mine = &inner.columns()[own.index()];
-        let name = outer.column_name(id);
-        if let Some(upper) = column.upper.map(|id| exact(outer, id))
-            && mine.upper.is_none_or(|id| exact(inner, id) > upper)
-        {
-            let entries = vec![(own, Number::ONE)];
-            out.push(Claim { name: format!("upper bound of {name}"), entries, side: upper });
-        }
-        if let Some(lower) = column.lower.map(|id| exact(outer, id))
-            && mine.lower.is_none_or(|id| exact(inner, id) < lower)
-        {
-            let entries = vec![(own, -Number::ONE)];
-            out.push(Claim { name: format!("lower bound of {name}"), entries, side: -lower });
-        }
-    }
-    out
 }
 
 /// Takes what is published, where both are as published.

@@ -24,6 +24,8 @@ pub struct Plan {
     pub best_known: Option<f64>,
     /// Whether rivals are broken on purpose to see that it is noticed.
     pub mutants: bool,
+    /// Orders of rows and columns that each rival is searched in, beside the one as written.
+    pub orders: u32,
     /// The instances of a growth study.
     pub growth: GrowthPlan,
 }
@@ -64,6 +66,7 @@ impl Default for Plan {
             rows: 500,
             best_known: None,
             mutants: true,
+            orders: 10,
             growth: GrowthPlan::default(),
         }
     }

@@ -1,7 +1,7 @@
 //! Bounds that follow from the data: propagation over the written rows in exact arithmetic
 //! (Savelsbergh 1994, ORSA Journal on Computing 6).
 
-use model::{ColumnId, Model, Number, RowId};
+use model::{ColumnId, Model, Number, Row, RowId};
 
 use crate::desk::Desk;
 
@@ -23,7 +23,11 @@ pub(crate) struct AtMost {
 
 /// The sides of a row, each as at most; the second tells whether it was turned round.
 pub(crate) fn sides(model: &Model, row: RowId) -> Vec<(AtMost, bool)> {
-    let row = model.row(row);
+    sides_of(model.row(row))
+}
+
+/// The same of a row that need not be written.
+pub(crate) fn sides_of(row: Row) -> Vec<(AtMost, bool)> {
     let mut out = Vec::new();
     if let Some(lower) = row.lower {
         let entries = row.entries.iter().map(|(column, a)| (*column, -a.clone())).collect();

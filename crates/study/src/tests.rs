@@ -8,6 +8,11 @@ use catalogue::{Class, generate};
 use instance::{Instance, Reader, read};
 use record::study::{EquivalenceKind, EquivalenceLevel, OrderLevel, Relation};
 
+mod infeasibility;
+mod rows;
+mod symmetry;
+mod variability;
+
 use crate::{Desk, Plan, Running, Source, Subject, court, model_of};
 
 /// A study driven to its end in slices of `ticks`.
@@ -280,4 +285,22 @@ fn few_classes_of_cuts_are_chosen_that_gain_most_of_what_all_gain() {
     for class in &found.classes {
         assert!(class.added > 0 && !found.idle.contains(&class.class), "{class:?}");
     }
+}
+
+#[test]
+fn the_dual_share_is_a_range_where_multipliers_are_not_unique_and_0_where_sides_are() {
+    // min 3x with x ≥ 2 said twice: either row may carry the whole bound of 6.
+    let text = "Twice\nminimise\n  3 x\nsubject to\n  x ≥ 2  (once)\n  x ≥ 2  (again)\n  x + 1 y ≥ 1  (idle)\n  x − y ≥ 0  (zero)\n  0 ≤ y ≤ 9\n  x ≥ 0\n";
+    let subjects = vec![subject("A", text, &instance("T\na b\n"))];
+    let found = driven(9_999, |desk| crate::families::families(desk, subjects, Plan::default()));
+    let share = |name: &str| {
+        let family = found.rivals[0].families.iter().find(|one| one.name == name);
+        family.expect("a family").dual.expect("a share")
+    };
+    for name in ["once", "again"] {
+        let (low, high) = share(name);
+        assert!(close(low, Some(0.0)) && close(high, Some(6.0)), "{low:?} {high:?}");
+    }
+    let nothing = (Some(0.0), Some(0.0));
+    assert_eq!((share("idle"), share("zero")), (nothing, nothing));
 }

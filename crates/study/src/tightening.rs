@@ -10,12 +10,12 @@
 use std::collections::BTreeMap;
 use std::rc::Rc;
 
-use model::{ColumnId, Model, Number, Row, RowId, Sense, nearest_f64};
+use model::{ColumnId, FamilyState, Model, Number, Row, RowId, Sense, nearest_f64};
 use record::study::{FamilyTightening, RivalTightening, Tightening};
 
 use crate::desk::Desk;
 use crate::plan::Plan;
-use crate::propagate::{AtMost, Bounds, most, propagate, sides};
+use crate::propagate::{AtMost, Bounds, bounds_of, most, propagate, sides, with_bounds};
 use crate::subject::Subject;
 use crate::words::{exact, row as named};
 
@@ -68,7 +68,25 @@ async fn of_rival(desk: &Desk, subject: &Subject, plan: &Plan) -> RivalTightenin
     say("its relaxation with smaller coefficients".to_owned());
     out.bound_by_data = bound_with(desk, model, &by_data, out.bound).await;
     out.bound_by_relaxation = bound_with(desk, model, &by_relaxation, out.bound).await;
+    if let Some(bounds) = bounds {
+        (out.bounds, out.model) = tighter(model, &by_relaxation, &bounds);
+    }
     out
+}
+
+/// How many bounds are tighter, and the model with these rows and bounds in MPS.
+fn tighter(model: &Model, rows: &Rewritten, bounds: &[Bounds]) -> (u32, String) {
+    let own = bounds_of(model);
+    let sides =
+        |new: &Bounds, old: &Bounds| usize::from(new.0 != old.0) + usize::from(new.1 != old.1);
+    let count = count(bounds.iter().zip(&own).map(|(new, old)| sides(new, old)).sum());
+    let on_demand = model.families().iter().any(|family| family.state == FamilyState::OnDemand);
+    if on_demand || (count == 0 && rows.is_empty()) {
+        return (count, String::new());
+    }
+    let tighter = model.rewritten(rows).ok().map(|model| with_bounds(&model, bounds));
+    let written = tighter.and_then(|model| model::mps::write(&model).ok());
+    (count, written.map_or_else(String::new, |written| written.text))
 }
 
 /// The bound with these rows.

@@ -215,6 +215,21 @@ impl Search {
         rows.map(|(origin, &y)| (self.row_name(origin), y)).collect()
     }
 
+    /// The members of families over subsets that separation added to the relaxation, by name, in
+    /// exact arithmetic.
+    #[must_use]
+    pub fn members(&self) -> Vec<(String, model::Row)> {
+        let Some(relaxation) = &self.relaxation else { return Vec::new() };
+        let members = relaxation.origins().iter().filter_map(|origin| match origin {
+            RowOrigin::Member { family, subset } => {
+                let row = self.model.subset_family(*family).member(subset);
+                Some((self.row_name(origin), row))
+            }
+            RowOrigin::Written(_) | RowOrigin::Cut(..) => None,
+        });
+        members.collect()
+    }
+
     /// The name of a row of the relaxation: `order[Ash → Birch]`, `subtour{Ash, Birch}`.
     fn row_name(&self, origin: &RowOrigin) -> String {
         match origin {

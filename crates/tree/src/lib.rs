@@ -127,6 +127,7 @@ pub use search::{Progress, Search, Work};
 pub use separate::general::{Class, Classes, Derivation, GeneralCut};
 pub use settings::{Branching, Cuts, NodeWork, Selection, Settings};
 pub use summary::{NodeWorkCounts, Summary};
+pub use symmetry::{exchanged, index_sets, is_symmetry};
 
 #[cfg(test)]
 mod tests;

@@ -74,6 +74,12 @@ impl Search {
         }
     }
 
+    /// An estimate (from below) of the condition of the basis that the kernel stands at, in scaled
+    /// units; after a root without a search that is the optimal one.
+    pub fn condition_estimate(&mut self) -> Option<f64> {
+        self.relaxation.as_mut()?.simplex.condition_estimate()
+    }
+
     fn root_result(&self, status: Status, hand: Option<&Hand>) -> RootResult {
         RootResult {
             status,

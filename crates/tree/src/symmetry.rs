@@ -45,7 +45,8 @@ pub(crate) fn copies(model: &Model) -> Vec<LabelId> {
 }
 
 /// The labels at each place of each variable's tuples, without repeated sets.
-fn index_sets(model: &Model) -> Vec<Vec<LabelId>> {
+#[must_use]
+pub fn index_sets(model: &Model) -> Vec<Vec<LabelId>> {
     let mut sets: Vec<Vec<LabelId>> = Vec::new();
     for variable in model.variables() {
         let columns = variable.columns.clone().map(ColumnId);
@@ -73,7 +74,14 @@ fn index_sets(model: &Model) -> Vec<Vec<LabelId>> {
 
 /// Whether exchanging two labels gives the same model.
 fn is_exchangeable(model: &Model, a: LabelId, b: LabelId) -> bool {
-    let Some(image) = exchanged(model, a, b) else { return false };
+    exchanged(model, a, b).is_some_and(|image| is_symmetry(model, &image))
+}
+
+/// Whether a permutation of columns (the column that each becomes) gives the same written model:
+/// the same data of columns, and each row becomes another with the same sides. Families over
+/// subsets are not looked at. `O(non-zeros · log)`.
+#[must_use]
+pub fn is_symmetry(model: &Model, image: &[usize]) -> bool {
     let data = |column: usize| {
         let column = &model.columns()[column];
         (column.cost, column.lower, column.upper, column.integer)
@@ -101,8 +109,10 @@ fn is_exchangeable(model: &Model, a: LabelId, b: LabelId) -> bool {
     count.values().all(|&count| count == 0)
 }
 
-/// The column that each becomes; `None` where one has no image.
-fn exchanged(model: &Model, a: LabelId, b: LabelId) -> Option<Vec<usize>> {
+/// The column that each becomes when two labels are exchanged in every tuple; `None` where one has
+/// no image, or no tuple has them.
+#[must_use]
+pub fn exchanged(model: &Model, a: LabelId, b: LabelId) -> Option<Vec<usize>> {
     let mut image: Vec<usize> = (0..model.columns().len()).collect();
     let mut any = false;
     for variable in model.variables() {

@@ -21,7 +21,7 @@ const ARROWS: &[(&str, &[&str])] = &[
     ("report", &["record"]),
     ("tree", &["lp", "model", "separate", "proof"]),
     ("catalogue", &["notation", "instance", "model"]),
-    ("study", &["model", "instance", "record", "notation", "proof", "tree", "catalogue"]),
+    ("study", &["lp", "model", "instance", "record", "notation", "proof", "tree", "catalogue"]),
     (
         "engine",
         &[

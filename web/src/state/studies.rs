@@ -13,7 +13,7 @@ use yew::Reducible;
 use crate::state::document::Document;
 
 /// The kinds, each with its question and what is done to answer it.
-pub(crate) const KINDS: [(&str, &str, &str); 8] = [
+pub(crate) const KINDS: [(&str, &str, &str); 11] = [
     (
         "equivalence",
         "Are the rivals the same problem?",
@@ -53,7 +53,28 @@ pub(crate) const KINDS: [(&str, &str, &str); 8] = [
         "Every rival on parts of the instance, five of each size; paired, with what is not \
          distinguishable said to be so.",
     ),
-    ("numerics", "Do the coefficients range too far?", "Ranges, ratios, and what can leak."),
+    (
+        "numerics",
+        "Do the coefficients range too far?",
+        "Ranges, ratios, what can leak, the condition of the optimal basis, and what exact \
+         arithmetic makes of bound and plan.",
+    ),
+    (
+        "symmetry",
+        "What does a rival not tell apart?",
+        "Labels that can be exchanged, other symmetries, each verified, and rows that keep one copy.",
+    ),
+    (
+        "variability",
+        "How much is chance?",
+        "Every rival with its rows and columns in ten other orders, the same for all; each stop \
+         as the root.",
+    ),
+    (
+        "infeasibility",
+        "Why is there no plan?",
+        "The fewest rows that cannot hold together, and the cheapest way to relax them.",
+    ),
 ];
 
 /// What a study gave.

@@ -1,7 +1,8 @@
 //! The studies of the evidence: a question each, a button, and what was found.
 
 use record::study::Report;
-use report::study::{Section, Table, sections};
+use report::certificate;
+use report::study::{Figure, Section, Table, derived, overview, sections};
 use yew::prelude::*;
 
 use crate::browser::share::download;
@@ -132,6 +133,7 @@ fn body(document: &Document, shelf: &Shelf, kind: &'static str, how: &str) -> Ht
                 <p class="warn">{ "Rivals, instance or settings have changed since: ask again." }</p>
             }
             { results(found) }
+            { handed(document, found) }
         </>
     }
 }
@@ -139,8 +141,49 @@ fn body(document: &Document, shelf: &Shelf, kind: &'static str, how: &str) -> Ht
 fn results(found: &Answer) -> Html {
     match &found.reports {
         Err(why) => html! { <p class="warn">{ format!("It could not be made: {why}.") }</p> },
-        Ok(reports) => reports.iter().flat_map(sections_of).collect(),
+        Ok(reports) => {
+            let all: Vec<&Report> = reports.iter().collect();
+            let over = overview(&all).map(|found| section(&found));
+            over.into_iter().chain(reports.iter().flat_map(sections_of)).collect()
+        }
     }
+}
+
+/// What is kept of an answer: models that came out of it as rivals, certificates as a file.
+fn handed(document: &Document, found: &Answer) -> Html {
+    let Ok(reports) = &found.reports else { return Html::default() };
+    let proofs = certificate::json(reports).map(|text| {
+        let name = file_of(&document.title, "certificates.json");
+        let onclick = Callback::from(move |_: MouseEvent| download(&name, &text));
+        html! { <button type="button" data-testid="certificates" {onclick}>{ "Save the certificates" }</button> }
+    });
+    html! {
+        <div class="row">
+            { proofs }
+            for (words, text) in reports.iter().flat_map(derived) {
+                <Derived {words} {text} />
+            }
+        </div>
+    }
+}
+
+#[derive(Properties, PartialEq)]
+struct DerivedProps {
+    words: String,
+    text: String,
+}
+
+/// A model that came out of a study, to be added as a rival.
+#[component]
+fn Derived(props: &DerivedProps) -> Html {
+    let hands = use_hands();
+    let text = props.text.clone();
+    let onclick = Callback::from(move |_: MouseEvent| {
+        if let Some(hands) = &hands {
+            hands.document.dispatch(DocumentAction::Text(text.clone()));
+        }
+    });
+    html! { <button type="button" data-testid="derived" {onclick}>{ props.words.clone() }</button> }
 }
 
 fn sections_of(report: &Report) -> Vec<Html> {
@@ -154,6 +197,9 @@ fn section(section: &Section) -> Html {
             for sentence in &section.verdict {
                 <p class="prose">{ sentence.clone() }</p>
             }
+            if let Some(figure) = &section.figure {
+                <div class="scroll">{ drawn(figure) }</div>
+            }
             if let Some(found) = &section.table {
                 <div class="scroll" tabindex="0" role="region" aria-label={section.heading.clone()}>
                     { table(found) }
@@ -163,6 +209,29 @@ fn section(section: &Section) -> Html {
                 <p class="prose soft">{ sentence.clone() }</p>
             }
         </div>
+    }
+}
+
+/// The order of the rivals; it is told in words above it.
+fn drawn(figure: &Figure) -> Html {
+    let (width, height) = figure.size;
+    let text = |x: &usize, y: &usize, style: &'static str, word: &String| {
+        html! { <text x={x.to_string()} y={y.to_string()} {style}>{ word.clone() }</text> }
+    };
+    html! {
+        <svg role="img" aria-label={figure.label.clone()} viewBox={format!("0 0 {width} {height}")}
+            width={width.to_string()} height={height.to_string()} fill="currentColor">
+            for ([x1, y1, x2, y2], dashes) in &figure.lines {
+                <line x1={x1.to_string()} y1={y1.to_string()} x2={x2.to_string()} y2={y2.to_string()}
+                    stroke="currentColor" stroke-dasharray={*dashes} />
+            }
+            for (x, y, word) in &figure.words {
+                { text(x, y, "font-style:italic", word) }
+            }
+            for (x, y, name) in &figure.names {
+                { text(x, y, "font-weight:600;text-anchor:middle", name) }
+            }
+        </svg>
     }
 }
 

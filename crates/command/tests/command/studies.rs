@@ -182,3 +182,55 @@ fn the_decision_record_holds_what_was_found_and_what_would_reopen_it() {
     assert_eq!(lines.len(), 3);
     assert!(lines[1].starts_with("Six stops (invented),,A,"), "{table}");
 }
+
+#[test]
+fn a_tightened_rival_is_handed_over_and_one_with_nothing_to_tighten_is_refused() {
+    let text = "hullward = 1\n[instance]\ntext = '''\nT\na b\n\nd by t\na 30\nb 20\n'''\n[[rival]]\ntext = '''\nLots\ndata\n  T  periods\n  \
+                d_t  ∀ t ∈ T  demand\nminimise\n  Σ_{t ∈ T} 10 y_t + Σ_{t ∈ T} 2 q_t\nsubject to\n  q_t ≤ 1000 y_t  ∀ t ∈ T  (switch)\n  \
+                q_t ≥ d_t  ∀ t ∈ T  (meet)\n  0 ≤ q_t ≤ 40  ∀ t ∈ T\n  y_t ∈ {0, 1}  ∀ t ∈ T\n'''\n";
+    let tight = hullward(&["write", "-", "--as", "tightened"], text);
+    assert_eq!(status(&tight), 0, "{}", err(&tight));
+    let (tight, said) = (out(&tight), err(&tight));
+    assert!(tight.contains("-40") && !tight.contains("-1000"), "{tight}");
+    assert!(said.contains("coefficients of rows made smaller: 2"), "{said}");
+    // As a rival of its own it has the bound that was promised: 2·50 + 10·(30 + 20)/40.
+    let rival = format!("hullward = 1\n[[rival]]\nmps = '''\n{tight}'''\n");
+    let run = out(&hullward(&["run", "-", "--json"], &rival));
+    let object: Value = serde_json::from_str(run.lines().next().unwrap_or_default()).expect("JSON");
+    let bound = object["root"]["bound"].as_f64().expect("a bound");
+    assert!((112.5 - 1e-9..=120.0 + 1e-9).contains(&bound), "{object}");
+    assert_eq!(object["search"]["incumbent"].as_f64(), Some(120.0), "{object}");
+
+    let none = hullward(&["write", "-", "--as", "tightened", "--rival", "B"], SCENARIO);
+    assert_eq!(status(&none), 2);
+    assert!(err(&none).contains("rows on demand would be lost"), "{}", err(&none));
+}
+
+#[test]
+fn a_pack_is_run_again_and_a_new_instance_is_held_against_it() {
+    let head = &SCENARIO[..SCENARIO.find("[[study]]").unwrap_or_default()];
+    let pack = hullward(&["write", "-", "--as", "pack"], head);
+    assert_eq!(status(&pack), 0, "{}", err(&pack));
+    let pack = out(&pack);
+    let object: Value = serde_json::from_str(&pack).expect("JSON");
+    assert_eq!(object["expected"].as_array().map(Vec::len), Some(2));
+    assert_eq!(object["expected"][0]["columns"], 35);
+    let again = hullward(&["drift", "-"], &pack);
+    assert_eq!((status(&again), out(&again).trim()), (0, "all 2 results are as recorded"));
+    // Another optimum was recorded: that is told, and fails.
+    let optimum = object["expected"][0]["optimum"].to_string();
+    let wrong = pack.replacen(&format!("\"optimum\": {optimum}"), "\"optimum\": 1.5", 1);
+    let told = hullward(&["drift", "-"], &wrong);
+    assert_eq!(status(&told), 3);
+    assert!(out(&told).starts_with("A: optimum"), "{}", out(&told));
+    // One stop more than was ever recorded.
+    let file = std::env::temp_dir().join(format!("hullward-drift-{}", std::process::id()));
+    let stops = "Ash 0 0\nBirch 9 2\nCedar 4 8\nElm 11 9\nFir 2 5\nGorse 7 4\nHazel 5 5\n";
+    std::fs::write(&file, stops).expect("it is written");
+    let drift = hullward(&["drift", "-", &file.to_string_lossy()], &pack);
+    assert_eq!(status(&drift), 0, "{}", err(&drift));
+    let said = out(&drift);
+    assert!(said.contains("A: columns 48, outside of the recorded 35 to 35"), "{said}");
+    std::fs::remove_file(&file).expect("it was there");
+    assert_eq!(status(&hullward(&["drift", "-"], "{}")), 2);
+}

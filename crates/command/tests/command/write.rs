@@ -214,7 +214,7 @@ fn what_cannot_be_written_is_refused_in_words() {
     };
     let write = |rest: &[&'static str]| [&["write", "-"], rest].concat();
     for form in ["pdf", "docx"] {
-        let says = "there are mps, latex, text, scenario, link";
+        let says = "there are mps, tightened, latex, text, scenario, link";
         refused(&write(&["--as", form]), SCENARIO, says);
     }
     refused(&write(&[]), SCENARIO, "write needs --as and one of mps");

@@ -38,7 +38,7 @@ const RUN: [&str; 15] = [
 ];
 const NODE_WORK: [(&str, ()); 3] =
     [("propagation", ()), ("reduced costs", ()), ("objective step", ())];
-const STUDIES: [(&str, ()); 10] = [
+const STUDIES: [(&str, ()); 11] = [
     ("ladder", ()),
     ("families", ()),
     ("equivalence", ()),
@@ -49,6 +49,7 @@ const STUDIES: [(&str, ()); 10] = [
     ("variability", ()),
     ("numerics", ()),
     ("symmetry", ()),
+    ("infeasibility", ()),
 ];
 
 /// The words for the readers of instances.

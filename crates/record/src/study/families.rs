@@ -46,6 +46,10 @@ pub struct FamilyShare {
     pub gained: Option<f64>,
     /// Its Shapley value: the mean gain over every order of adding the families.
     pub shapley: Option<f64>,
+    /// The dual share, Σ y·side over its rows, from the least to the most over all optimal
+    /// multipliers, `None` where that has no end; nothing where rows on demand belong to it. It is no
+    /// measure of what the family is worth: 0 wherever all its sides are 0.
+    pub dual: Option<(Option<f64>, Option<f64>)>,
 }
 
 /// What it is worth that a variable must be whole.

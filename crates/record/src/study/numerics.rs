@@ -30,6 +30,20 @@ pub struct RivalNumerics {
     pub families: Vec<FamilyNumerics>,
     /// The largest amount by which a binary that is 10⁻⁶ off opens a row, and the row.
     pub leak: (f64, String),
+    /// The same added up over all rows that a binary switches.
+    pub leak_in_all: f64,
+    /// An estimate (from below) of the condition of the basis at the optimum of the relaxation, in
+    /// scaled units.
+    pub condition: Option<f64>,
+    /// The bound of the relaxation in floating-point arithmetic.
+    pub bound: Option<f64>,
+    /// By how much what exact arithmetic proves is away from it; `None` where it proves nothing.
+    pub bound_off: Option<f64>,
+    /// Whether exact arithmetic found the optimum of the relaxation itself.
+    pub exact: bool,
+    /// The largest violation, in exact arithmetic, of the best plan with its whole values rounded;
+    /// `None` where no plan was found.
+    pub plan_off: Option<f64>,
     /// What is to be said of it, by named thresholds; empty where nothing is.
     pub verdicts: Vec<String>,
 }

@@ -86,4 +86,42 @@ pub struct Certificate {
     pub violation: Option<f64>,
     /// Why it was not tried, or not to the end.
     pub why: String,
+    /// The objective of the witness: coefficients by column.
+    pub objective: Vec<(String, String)>,
+    /// The point of the relaxation that violates it most: values by column, 0 left out.
+    pub point: Vec<(String, f64)>,
+    /// What proves each row, with the rows and bounds that it rests on; empty unless it holds.
+    pub proofs: Vec<RowProof>,
+    /// The rows of the relaxation that proofs use.
+    pub system: Vec<SystemRow>,
+    /// The bounds of its columns that proofs use; an infinite one is empty.
+    pub bounds: Vec<(String, String, String)>,
+}
+
+/// The proof of one row, `Σ a x ≤ side`: with d = a − Σ y·row, its left side is at most
+/// Σ y·(side of the row that goes with the sign of y) + Σ d·(bound that goes with the sign of d).
+/// Numbers are fractions.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct RowProof {
+    /// The row.
+    pub row: String,
+    /// Its coefficients by column.
+    pub entries: Vec<(String, String)>,
+    /// Its side.
+    pub side: String,
+    /// The multipliers y by row of the system.
+    pub multipliers: Vec<(String, String)>,
+}
+
+/// A row of a relaxation.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct SystemRow {
+    /// Its name.
+    pub row: String,
+    /// Its coefficients by column.
+    pub entries: Vec<(String, String)>,
+    /// Its lower side; empty where it has none.
+    pub lower: String,
+    /// Its upper side; empty where it has none.
+    pub upper: String,
 }

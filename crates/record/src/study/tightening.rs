@@ -28,6 +28,11 @@ pub struct RivalTightening {
     pub rows: u32,
     /// Rows that the limit left out.
     pub left_out: u32,
+    /// Bounds of columns that are tighter by the rows, in `model`.
+    pub bounds: u32,
+    /// The model with the smallest coefficients and bounds that are proved, in MPS; empty where
+    /// nothing is tighter, or rows on demand would be lost.
+    pub model: String,
 }
 
 /// One family with rows that a binary switches.

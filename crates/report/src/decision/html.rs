@@ -53,6 +53,10 @@ fn write_block(block: &Block, out: &mut String) {
             // Writing to a string cannot fail.
             let _ = write!(out, "<ul>\n{items}</ul>\n");
         }
+        Block::Figure(svg) => {
+            out.push_str(svg);
+            out.push('\n');
+        }
         Block::Table(table) => write_table(table, out),
     }
 }

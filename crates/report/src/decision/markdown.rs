@@ -23,6 +23,8 @@ pub(super) fn document(blocks: &[Block]) -> String {
                 let fence = fence(text);
                 writeln!(out, "{fence}\n{}\n{fence}\n", text.trim_end())
             }
+            // What a drawing shows is said in words beside it.
+            Block::Figure(_) => Ok(()),
             Block::Table(found) => writeln!(out, "{}", table(found)),
         };
     }

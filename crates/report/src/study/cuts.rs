@@ -17,6 +17,7 @@ fn of_rival(rival: &RivalCuts) -> Section {
         notes.push(format!("Nothing is found by {}.", and(&rival.idle)));
     }
     Section {
+        figure: None,
         heading: format!("General cuts for {}: {}", rival.rival, rival.title),
         verdict: vec![verdict(rival)],
         table: (!rival.classes.is_empty()).then_some(table),

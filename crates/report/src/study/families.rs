@@ -8,7 +8,9 @@ use crate::number::{count, short};
 /// What the three figures mean.
 const MEANING: &str = "without: the bound when the family is left out; alone: when it is the only \
 one; share: its Shapley value, the mean gain over every order of adding families. Each is solved \
-anew. Figures are of this instance and objective.";
+anew. Figures are of this instance and objective. The dual share stands beside them for who looks for \
+it: it is 0 for every family whose sides are 0, and a range where multipliers are not unique, so it \
+does not say what a family is worth.";
 
 pub(super) fn sections(families: &Families) -> Vec<Section> {
     let mut sections: Vec<Section> = families.rivals.iter().map(of_rival).collect();
@@ -19,13 +21,15 @@ pub(super) fn sections(families: &Families) -> Vec<Section> {
 }
 
 fn of_rival(rival: &RivalFamilies) -> Section {
-    let mut table = Table::new(&["family", "without", "lost", "alone", "gained", "share"], &[0]);
+    let mut table =
+        Table::new(&["family", "without", "lost", "alone", "gained", "share", "dual share"], &[0]);
     table.rows = rival.families.iter().map(row).collect();
     let mut notes = Vec::new();
     if !rival.no_shapley.is_empty() {
         notes.push(format!("No share is given: {}.", rival.no_shapley));
     }
     Section {
+        figure: None,
         heading: format!("Where the bound of {} comes from: {}", rival.rival, rival.title),
         verdict: verdict(rival),
         table: Some(table),
@@ -42,7 +46,18 @@ fn row(share: &FamilyShare) -> Vec<String> {
         value(share.alone),
         value(share.gained),
         value(share.shapley),
+        dual(share),
     ]
+}
+
+/// The dual share, or its range.
+fn dual(share: &FamilyShare) -> String {
+    let Some((low, high)) = share.dual else { return "–".to_owned() };
+    let end = |end: Option<f64>, none: &str| end.map_or_else(|| none.to_owned(), short);
+    match (low, high) {
+        (Some(low), Some(high)) if (high - low).abs() <= 1e-3 * (1.0 + high.abs()) => short(high),
+        _ => format!("{} to {}", end(low, "−∞"), end(high, "∞")),
+    }
 }
 
 fn verdict(rival: &RivalFamilies) -> Vec<String> {

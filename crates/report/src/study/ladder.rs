@@ -33,6 +33,7 @@ fn of_rival(rival: &RivalLadder) -> Section {
         })
         .collect();
     Section {
+        figure: None,
         heading: format!("Bound ladder of {}: {}", rival.rival, rival.title),
         verdict: best_step(rival).into_iter().collect(),
         table: Some(table),

@@ -18,15 +18,43 @@ fn of_rival(rival: &RivalNumerics) -> Section {
         verdict.push("Nothing in its coefficients is to be worried about.".to_owned());
     }
     Section {
+        figure: None,
         heading: format!("Coefficients of {}: {}", rival.rival, rival.title),
         verdict,
         table: Some(table),
-        notes: vec![
-            range("rows", rival.matrix),
-            range("costs", rival.costs),
-            range("sides", rival.sides),
-        ],
+        notes: notes(rival),
     }
+}
+
+fn notes(rival: &RivalNumerics) -> Vec<String> {
+    let mut notes =
+        vec![range("rows", rival.matrix), range("costs", rival.costs), range("sides", rival.sides)];
+    if rival.leak_in_all > 0.0 {
+        notes.push(format!(
+            "Switches that are 10⁻⁶ off can let through {} in one row and {} in all.",
+            short(rival.leak.0),
+            short(rival.leak_in_all)
+        ));
+    }
+    if let Some(condition) = rival.condition {
+        notes.push(format!(
+            "The basis at the optimum of the relaxation has a condition of about {}.",
+            short(condition)
+        ));
+    }
+    notes.extend(rival.bound_off.map(|off| match (rival.exact, off == 0.0) {
+        (true, true) => "Exact arithmetic finds the same bound.".to_owned(),
+        (true, false) => format!("Exact arithmetic finds a bound that is {} away.", short(off)),
+        (false, _) => format!("Exact arithmetic proves the bound to within {}.", short(off)),
+    }));
+    notes.extend(rival.plan_off.map(|off| {
+        if off == 0.0 {
+            "The best plan, with whole values, meets every row in exact arithmetic.".to_owned()
+        } else {
+            format!("The best plan, with whole values, misses a row by {}.", short(off))
+        }
+    }));
+    notes
 }
 
 fn range(what: &str, (low, high): (f64, f64)) -> String {

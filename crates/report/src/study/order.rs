@@ -15,6 +15,7 @@ pub(super) fn section(order: &Order) -> Section {
         })
         .collect();
     Section {
+        figure: None,
         heading: format!("Which of {a} and {b} is stronger?"),
         verdict: vec![verdict(order)],
         table: Some(table),

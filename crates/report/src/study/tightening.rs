@@ -28,7 +28,7 @@ fn of_rival(rival: &RivalTightening) -> Section {
             count(u64::from(rival.rows))
         ));
     }
-    Section { heading, verdict: vec![verdict(rival)], table: Some(table), notes }
+    Section { heading, verdict: vec![verdict(rival)], figure: None, table: Some(table), notes }
 }
 
 fn row(family: &FamilyTightening) -> Vec<String> {

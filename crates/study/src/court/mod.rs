@@ -1,7 +1,8 @@
 //! The equivalence court: whether two rivals are the same problem.
 //!
 //! Nothing but a proof settles it, so everything is tried that can tell them apart: the optimum, the best plan of
-//! each in the other, duels on random objectives of either sign, and on sub-instances every plan.
+//! each in the other, duels on random objectives of either sign, on sub-instances every plan, and each row of one over
+//! every plan of the other.
 //! Last, each rival is broken on purpose to see that the court would notice. The verdict names
 //! which equivalence holds and how far it was tried.
 
@@ -9,6 +10,7 @@ mod duel;
 mod enumerate;
 mod mutants;
 mod plans;
+mod rows;
 mod verdict;
 
 use std::rc::Rc;
@@ -60,6 +62,8 @@ pub(crate) struct Findings {
     pub(crate) control: Option<u32>,
     /// Whether all plans of the instance itself were compared.
     pub(crate) all_compared: bool,
+    /// Whether no plan of either breaks a row of the other.
+    pub(crate) rows_hold: bool,
 }
 
 impl Findings {
@@ -97,6 +101,9 @@ impl<'s> Case<'s> {
         } else {
             self.duels(&mut findings).await;
             self.enumerations(&mut findings).await;
+            if !findings.plans_differ && !findings.all_compared {
+                self.rows(&mut findings).await;
+            }
         }
         let mutants = if self.plan.mutants && !self.shared.pairs.is_empty() {
             self.mutants(&findings).await

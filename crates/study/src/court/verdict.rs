@@ -6,7 +6,7 @@ use super::Findings;
 
 /// Whether they are the same problem, how far that goes, and in which sense.
 pub(super) fn verdict(findings: &Findings) -> (Option<bool>, Level, Kind) {
-    let tried = if findings.all_compared {
+    let tried = if findings.all_compared || findings.rows_hold {
         Level::Proved
     } else if findings.compared.is_some() {
         Level::Enumerated

@@ -41,7 +41,12 @@ async fn each_question_is_answered_and_goes_into_the_record() -> Outcome<()> {
         );
         let order = ask(browser, "order").await?;
         assert!(order.contains("C ⪰ A: C is never weaker than A – theorem"), "{order}");
-        for kind in ["ladder", "families", "tightening", "cuts", "numerics"] {
+        // The order of all is drawn, and told in words.
+        assert!(order.contains(" above ") && order.contains("(theorem)"), "{order}");
+        browser.select("[data-study=order] svg[role=img]").await?;
+        let wider = ["symmetry", "variability", "infeasibility"];
+        let kinds = ["ladder", "families", "tightening", "cuts", "numerics"];
+        for kind in kinds.into_iter().chain(wider) {
             let said = ask(browser, kind).await?;
             assert!(said.contains("Position labels"), "{kind}: {said}");
         }

@@ -1,0 +1,127 @@
+//! Variability in words.
+
+use record::study::{RivalVariability, Run, Variability, VariabilityPair};
+
+use super::{Section, Table, value};
+use crate::number::{count, of, short};
+
+pub(super) fn sections(report: &Variability) -> Vec<Section> {
+    let mut out = vec![orders(report)];
+    if !report.root.is_empty() && report.rivals.iter().any(|rival| rival.roots.len() > 1) {
+        out.push(roots(report));
+    }
+    out
+}
+
+fn orders(report: &Variability) -> Section {
+    let head =
+        ["rival", "nodes as written", "fewest", "most", "work, least", "mean", "most", "stopped"];
+    let mut table = Table::new(&head, &[0]);
+    table.rows = report.rivals.iter().map(row).collect();
+    let mut verdict: Vec<String> = report.rivals.iter().map(spread).collect();
+    verdict.extend(report.pairs.iter().map(|pair| paired(pair, report.orders + 1)));
+    Section {
+        figure: None,
+        heading: format!(
+            "How much chance is in a search? ({} of rows and columns, at most {} a run)",
+            of(u64::from(report.orders), "other order"),
+            of(u64::from(report.nodes), "node")
+        ),
+        verdict,
+        table: Some(table),
+        notes: vec![
+            "The same names stand in the same order in every rival. Work is non-zeros touched."
+                .to_owned(),
+        ],
+    }
+}
+
+fn all(rival: &RivalVariability) -> impl Iterator<Item = &Run> {
+    std::iter::once(&rival.written).chain(&rival.runs)
+}
+
+fn row(rival: &RivalVariability) -> Vec<String> {
+    let nodes = || all(rival).map(|run| run.nodes);
+    let whole = |number: u32| count(u64::from(number));
+    let stopped = all(rival).filter(|run| !run.solved).count();
+    vec![
+        format!("{} {}", rival.rival, rival.title),
+        whole(rival.written.nodes),
+        whole(nodes().min().unwrap_or(0)),
+        whole(nodes().max().unwrap_or(0)),
+        short(rival.work.0),
+        short(rival.work.1),
+        short(rival.work.2),
+        stopped.to_string(),
+    ]
+}
+
+fn spread(rival: &RivalVariability) -> String {
+    let factor = if rival.work.0 > 0.0 { rival.work.2 / rival.work.0 } else { 1.0 };
+    format!(
+        "{}: the same model in another order takes up to {} times the work.",
+        rival.rival,
+        short(factor)
+    )
+}
+
+fn paired(pair: &VariabilityPair, orders: u32) -> String {
+    let [a, b] = &pair.rivals;
+    let (ratio, low, high) = (short(pair.ratio), short(pair.interval.0), short(pair.interval.1));
+    let noise = if pair.beyond_noise {
+        "more than either varies alone"
+    } else {
+        "within what one of them varies alone: not distinguishable on this instance"
+    };
+    format!(
+        "{b} takes {ratio} times the work of {a} (95 % interval {low} to {high}), {noise}; {a} is ahead \
+         in {} of {orders} orders, {b} in {}.",
+        pair.wins, pair.losses
+    )
+}
+
+fn roots(report: &Variability) -> Section {
+    let mut head = vec!["root"];
+    head.extend(report.rivals.iter().map(|rival| rival.rival.as_str()));
+    let mut table = Table::new(&head, &[0]);
+    let first = report.rivals.iter().find(|rival| rival.roots.len() > 1);
+    for (root, _) in first.map_or(&[][..], |rival| &rival.roots) {
+        let bound = |rival: &RivalVariability| {
+            value(rival.roots.iter().find(|(own, _)| own == root).and_then(|(_, bound)| *bound))
+        };
+        let used = if *root == report.root_used { " (used)" } else { "" };
+        let mut row = vec![format!("{root}{used}")];
+        row.extend(report.rivals.iter().map(bound));
+        table.rows.push(row);
+    }
+    Section {
+        figure: None,
+        heading: format!(
+            "Does the root matter? The results are for {} = {}",
+            report.root, report.root_used
+        ),
+        verdict: report.rivals.iter().filter_map(|rival| turn(rival, &report.root_used)).collect(),
+        table: Some(table),
+        notes: Vec::new(),
+    }
+}
+
+fn turn(rival: &RivalVariability, used: &str) -> Option<String> {
+    let known: Vec<(&String, f64)> =
+        rival.roots.iter().filter_map(|(root, bound)| Some((root, (*bound)?))).collect();
+    let low = known.iter().min_by(|a, b| a.1.total_cmp(&b.1))?;
+    let high = known.iter().max_by(|a, b| a.1.total_cmp(&b.1))?;
+    if (high.1 - low.1).abs() <= 1e-6 * (1.0 + high.1.abs()) {
+        return Some(format!("{}: the bound is the same whichever stop is the root.", rival.rival));
+    }
+    let own = known.iter().find(|(root, _)| *root == used).map_or(f64::NAN, |(_, bound)| *bound);
+    Some(format!(
+        "{}: the bound depends on the root: {} with {used}, from {} with {} to {} with {}.",
+        rival.rival,
+        short(own),
+        short(low.1),
+        low.0,
+        short(high.1),
+        high.0
+    ))
+}

@@ -1,0 +1,176 @@
+//! How much a search varies when nothing but the order of rows and columns changes, and a bound
+//! with the root of a round trip.
+//!
+//! Ties are broken by number, so a model in another order is searched otherwise, though it is the
+//! same model (performance variability: Danna 2008; Lodi, Tramontani 2013). Orders are paired: the
+//! same names stand in the same order in every rival. A rival that is ahead must be so by more
+//! than either varies alone. Which element is the root changes the bound of some formulations and
+//! not of others: each is tried.
+
+use std::rc::Rc;
+
+use instance::Datum;
+use record::study::{RivalVariability, Run, Variability, VariabilityPair};
+
+use crate::desk::{Desk, Solved};
+use crate::plan::Plan;
+use crate::statistics::{count, interval, resampled, shifted_geometric_mean};
+use crate::subject::{Source, Subject, model_of};
+
+/// The shift of the geometric mean.
+const SHIFT: f64 = 1_000.0;
+/// Work within a tenth of each other is a tie.
+const TIE: f64 = 0.9;
+/// Families of round trips, which are the same whichever stop they begin at.
+const TRIPS: [&str; 2] = ["atsp", "tsp"];
+/// Roots that are tried at most.
+const MOST_ROOTS: usize = 60;
+
+/// Searches each rival in several orders, and bounds it with each root.
+pub async fn variability(desk: Rc<Desk>, subjects: Vec<Subject>, plan: Plan) -> Variability {
+    let mut out = Variability { nodes: plan.nodes, orders: plan.orders, ..Variability::default() };
+    if let Some((name, used)) = subjects.iter().find_map(root) {
+        (out.root, out.root_used) = (name, used);
+    }
+    for subject in &subjects {
+        let mut rival = RivalVariability {
+            rival: subject.letter.clone(),
+            title: subject.title.clone(),
+            ..RivalVariability::default()
+        };
+        desk.say(format!("{}: as it is written", rival.rival));
+        rival.written = run(&desk.solve(&subject.model, plan.search()).await);
+        for order in 1..=plan.orders {
+            desk.say(format!("{}: order {order} of {}", rival.rival, plan.orders));
+            let seed = plan.seed.wrapping_mul(1_000_003).wrapping_add(u64::from(order));
+            let (model, _) = subject.model.reordered(|name| key(seed, name));
+            rival.runs.push(run(&desk.solve(&Rc::new(model), plan.search()).await));
+        }
+        rival.work = spread(&rival);
+        rival.roots = roots(&desk, subject).await;
+        out.rivals.push(rival);
+    }
+    out.pairs = pairs(&out.rivals, plan.seed);
+    out
+}
+
+/// FNV-1a (Fowler, Noll, Vo 1991) over the seed and the name, with a last mixing of bits.
+fn key(seed: u64, name: &str) -> u64 {
+    let bytes = seed.to_le_bytes().into_iter().chain(name.bytes());
+    let hash = bytes.fold(0xcbf2_9ce4_8422_2325_u64, |hash, byte| {
+        (hash ^ u64::from(byte)).wrapping_mul(0x0000_0100_0000_01b3)
+    });
+    let hash = (hash ^ (hash >> 33)).wrapping_mul(0xff51_afd7_ed55_8ccd);
+    hash ^ (hash >> 33)
+}
+
+fn run(solved: &Solved) -> Run {
+    Run {
+        nodes: solved.nodes,
+        work: solved.work,
+        solved: solved.is_settled(),
+        incumbent: solved.incumbent,
+    }
+}
+
+fn work(run: &Run) -> f64 {
+    // Exact up to 2⁵³; more is not reached within the limits.
+    #[allow(clippy::cast_precision_loss, reason = "counts of work are far below 2^53")]
+    let work = run.work as f64;
+    work
+}
+
+fn all(rival: &RivalVariability) -> impl Iterator<Item = &Run> {
+    std::iter::once(&rival.written).chain(&rival.runs)
+}
+
+/// The least, the mean and the most work.
+fn spread(rival: &RivalVariability) -> (f64, f64, f64) {
+    let mut works: Vec<f64> = all(rival).map(work).collect();
+    works.sort_by(f64::total_cmp);
+    let mean = shifted_geometric_mean(&works, SHIFT);
+    (works.first().copied().unwrap_or(0.0), mean, works.last().copied().unwrap_or(0.0))
+}
+
+fn pairs(rivals: &[RivalVariability], seed: u64) -> Vec<VariabilityPair> {
+    let mut out = Vec::new();
+    for (place, a) in rivals.iter().enumerate() {
+        for b in &rivals[place + 1..] {
+            out.push(pair([a, b], seed));
+        }
+    }
+    out
+}
+
+fn pair([a, b]: [&RivalVariability; 2], seed: u64) -> VariabilityPair {
+    let shifted = |run: &Run| libm::log(work(run) + SHIFT);
+    let logs: Vec<f64> = all(a).zip(all(b)).map(|(a, b)| shifted(b) - shifted(a)).collect();
+    let least = libm::log(TIE);
+    let number = |of: &dyn Fn(f64) -> bool| {
+        u32::try_from(logs.iter().filter(|log| of(**log)).count()).unwrap_or(u32::MAX)
+    };
+    let mean = |logs: &[&f64]| {
+        (!logs.is_empty()).then(|| libm::exp(logs.iter().copied().sum::<f64>() / count(logs.len())))
+    };
+    let ratio = mean(&logs.iter().collect::<Vec<_>>()).unwrap_or(1.0);
+    let groups: Vec<Vec<f64>> = logs.iter().map(|&log| vec![log]).collect();
+    // Each alone: how far its slowest run is from its quickest.
+    let own = |rival: &RivalVariability| (rival.work.2 + SHIFT) / (rival.work.0 + SHIFT);
+    let noise = if own(a) > own(b) { own(a) } else { own(b) };
+    let away = if ratio > 1.0 { ratio } else { 1.0 / ratio };
+    VariabilityPair {
+        rivals: [a.rival.clone(), b.rival.clone()],
+        wins: number(&|log| log > -least),
+        ties: number(&|log| log.abs() <= -least),
+        losses: number(&|log| log < least),
+        ratio,
+        interval: interval(resampled(&groups, seed, mean)).unwrap_or((ratio, ratio)),
+        beyond_noise: away > noise,
+    }
+}
+
+/// The one stop that the instance names, with the name of the datum: the root of a round trip. Only
+/// where it is a matter of habit: supplied by the reader, or the depot of a shipped round trip.
+fn root(subject: &Subject) -> Option<(String, String)> {
+    let instance = &subject.source.as_ref()?.instance;
+    let mut elements = instance.data().filter_map(|(name, datum)| match datum {
+        Datum::Element(used) => Some((name, used)),
+        _ => None,
+    });
+    let (name, used) = elements.next().filter(|_| elements.next().is_none())?;
+    let trip = subject.entry.as_ref().is_some_and(|entry| TRIPS.contains(&entry.family.as_str()));
+    let free = instance.assumed.contains(name) || trip;
+    (free && instance.stops().contains(used)).then(|| (name.to_owned(), used.clone()))
+}
+
+/// The bound of the relaxation with each element as the root.
+async fn roots(desk: &Desk, subject: &Subject) -> Vec<(String, Option<f64>)> {
+    let (Some((name, _)), Some(source)) = (root(subject), &subject.source) else {
+        return Vec::new();
+    };
+    let mut out = Vec::new();
+    for element in source.instance.stops().iter().take(MOST_ROOTS) {
+        desk.say(format!("{}: with {element} as the root", subject.letter));
+        let Some(model) = with_root(source, &name, element) else { continue };
+        out.push((element.clone(), desk.relax(&Rc::new(model)).await.bound));
+    }
+    out
+}
+
+fn with_root(source: &Source, name: &str, element: &str) -> Option<model::Model> {
+    let mut instance = (*source.instance).clone();
+    instance.set(name, Datum::Element(element.to_owned()));
+    model_of(&source.text, &instance, &source.bind, &source.states)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn one_order_has_one_key_and_another_order_another() {
+        assert_eq!(key(1, "x[Ash → Birch]"), key(1, "x[Ash → Birch]"));
+        assert_ne!(key(1, "x[Ash → Birch]"), key(2, "x[Ash → Birch]"));
+        assert_ne!(key(1, "x[a]") > key(1, "x[b]"), key(9, "x[a]") > key(9, "x[b]"));
+    }
+}

@@ -7,6 +7,23 @@
 //! | [`relation`] | what is published about the bounds of rivals: [`relations`] |
 //! | [`generator`] | seeded instances as one would paste them: [`generate`] |
 //!
+//! # What the literature names and is not shipped
+//!
+//! | what | why |
+//! |---|---|
+//! | blossoms, combs, D-inequalities, source-destination and other facets of round trips | classes of general cuts where the search has them; blossoms also as odd cuts, `tsp/blossoms` |
+//! | rows of partitions and odd holes (Steiner trees), 2-partitions (groups), Möbius ladders and fences (orders), antiholes and wheels (stable sets) | they range over partitions, circles or pairs of sets, and a family here ranges over one set |
+//! | circles on demand (maximum cut, orders) | the same; on complete graphs triangles and 3-dicycles say as much |
+//! | lifted and extended covers, flow covers, flow packs, submodular and residual capacity rows | their coefficients come out of an algorithm: general cuts; the last are what `lines/multiple-choice` says |
+//! | constants of Gilmore and Lawler (Xia & Yuan 2006) | each is the optimum of an assignment, and no expression; `qap/least-ways` has a simpler one |
+//! | facilities as set packing; p-median by substitution (Church 2003) | other columns for the same rows; sets of nearer sites that are equal cannot be asked for in an expression |
+//! | compressed arc flow (Brandão & Pedroso 2016), reduced horizons, dominated columns | an algorithm that makes a graph smaller, not a statement |
+//! | factors by heads and tails (job shop) | sums along a route are recursive; they may be given as data, as the golden models do |
+//! | single-source facilities, knapsacks with choices or set-ups, partitions in place of coverings | other problems, for which no second form is named |
+//! | aggregated coverings | a relaxation of the covering rows that is no formulation |
+//! | quadratic hubs (O'Kelly 1987) | not linear: what it says is linearised in the three forms shipped |
+//! | branching on sets (Beale & Tomlin 1970), indicator rows, logarithmic cases | a way to search, or what `piecewise/logarithmic` shows |
+//!
 //! A formulation is a text file in `formulations/<family>/`, a family has one `family.toml`
 //! beside them. To add one, see DEVELOPERS.md.
 

@@ -33,7 +33,7 @@ pub(crate) const FAMILIES: &[Family] = &[
         "precedence-labels", "precedence", "rlt-labels", "loose-labels",
         "lifted-precedence-labels"
     ),
-    family!("tsp": "subtours", "degrees", "two-commodity"),
+    family!("tsp": "subtours", "degrees", "two-commodity", "blossoms"),
     family!("path": "flow", "potentials"),
     family!("ufl": "joined", "split", "radii"),
     family!(
@@ -42,10 +42,11 @@ pub(crate) const FAMILIES: &[Family] = &[
     family!("limited-path": "flow", "layers"),
     family!(
         "cvrp": "load-labels", "lifted-load-labels", "load-flow", "tight-load-flow",
-        "fractional-cuts", "capacity-cuts", "three-index", "routes"
+        "fractional-cuts", "capacity-cuts", "three-index", "routes", "two-commodity",
+        "multi-commodity"
     ),
     family!("cfl": "joined", "total", "split"),
-    family!("p-median": "joined", "split", "radius"),
+    family!("p-median": "joined", "split", "radius", "chained-radius"),
     family!("p-centre": "assignment", "radius"),
     family!(
         "tree": "labels", "one-commodity", "cuts", "subtours", "directed-cuts",
@@ -55,7 +56,7 @@ pub(crate) const FAMILIES: &[Family] = &[
         "steiner": "one-commodity", "cuts", "undirected-flow", "directed-cuts",
         "multi-commodity", "balanced-cuts", "nodes"
     ),
-    family!("design": "joined", "split", "by-origin"),
+    family!("design": "joined", "split", "by-origin", "paths"),
     family!("matching": "degree", "odd-sets"),
     family!("stable-set": "stars", "edges", "cliques", "odd-cycles"),
     family!(
@@ -64,7 +65,7 @@ pub(crate) const FAMILIES: &[Family] = &[
     ),
     family!("ordering": "labels", "dicycles"),
     family!("max-cut": "sides", "triangles"),
-    family!("grouping": "triangles", "assignment", "representatives"),
+    family!("grouping": "triangles", "assignment", "representatives", "groups"),
     family!("hub": "paths", "flow", "bounded-paths"),
     family!("clsp": "big-m", "location-form", "l-s", "shortest-path-form"),
     family!(
@@ -79,13 +80,23 @@ pub(crate) const FAMILIES: &[Family] = &[
     family!(
         "job-shop": "disjunctive", "time-indexed", "time-indexed-split", "surplus", "ranks"
     ),
-    family!("rcpsp": "pulse", "pulse-split", "step", "flow"),
+    family!("rcpsp": "pulse", "pulse-split", "step", "flow", "forbidden-sets", "events"),
     family!(
-        "unit": "aggregated", "pairwise", "three-binary", "turn-on-off", "three-binary-summed"
+        "unit": "aggregated", "pairwise", "three-binary", "turn-on-off", "three-binary-summed",
+        "intervals"
     ),
     family!(
         "piecewise": "incremental", "multiple-choice", "convex-combination", "logarithmic",
         "split-combination", "big-m", "tight-combination"
     ),
-    family!("qap": "big-m", "rlt-1", "products", "four-sums"),
+    family!("qap": "big-m", "rlt-1", "products", "four-sums", "least-ways", "rlt-2"),
+    family!(
+        "elementary-path": "labels", "one-commodity", "multi-commodity", "subtours"
+    ),
+    family!("multi-knapsack": "plain", "covers"),
+    family!("quadratic": "products", "row-sums", "triangles"),
+    family!("cases": "loose", "big-m", "multi-m", "hull"),
+    family!("tardiness": "big-m", "linear-ordering", "time-indexed"),
+    family!("lines": "joined", "split", "multiple-choice"),
+    family!("start-limits": "one-binary", "three-binary", "tight"),
 ];

@@ -3,6 +3,7 @@
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a test ends where it fails")]
 
+mod further;
 mod planned;
 
 use std::collections::BTreeMap;
@@ -29,7 +30,7 @@ type Size = (usize, usize, usize);
 
 /// What `family.toml` states in words, for complete data.
 fn stated(id: &str, instance: &Instance) -> Size {
-    if let Some(size) = planned::stated(id, instance) {
+    if let Some(size) = planned::stated(id, instance).or_else(|| further::stated(id, instance)) {
         return size;
     }
     let Counts { n, m, sites: (i, j) } = counts(instance);
@@ -110,7 +111,7 @@ fn on_instances(mut check: impl FnMut(&Entry, Class, &Instance)) {
 /// What the data may bring about: no row for what small or complete data lack (a drive without a
 /// drive back, a load too large for one vehicle, two in conflict that a third could represent), and
 /// two radii between which a client has no site.
-const BY_THE_DATA: [(&str, &str); 9] = [
+const BY_THE_DATA: [(&str, &str); 11] = [
     ("row.empty-family", "atsp/lifted-labels"),
     ("row.empty-family", "atsp/rlt-labels"),
     ("row.empty-family", "atsp/lifted-precedence-labels"),
@@ -118,6 +119,8 @@ const BY_THE_DATA: [(&str, &str); 9] = [
     ("row.empty-family", "colouring/partial-order"),
     ("row.empty-family", "cvrp/lifted-load-labels"),
     ("row.empty-family", "colouring/representatives"),
+    ("row.empty-family", "p-median/chained-radius"),
+    ("lint.twin-rows", "cases/multi-m"),
     ("lint.twin-rows", "p-centre/radius"),
     ("lint.twin-rows", "stable-set/odd-cycles"),
 ];

@@ -7,6 +7,7 @@
 //! | [`mod@cuts`] | which classes of general cuts are worth their rows |
 //! | [`court`] | whether two rivals are the same problem |
 //! | [`mod@order`] | which of two relaxations is stronger, and how far that is known |
+//! | [`mod@lift`] | which further values go with a plan in the natural variable |
 //! | [`mod@tightening`] | how small the coefficients of switches can be |
 //! | [`mod@growth`] | how rivals compare as instances grow |
 //! | [`mod@infeasibility`] | which rows cannot hold together, and the cheapest way to relax them |

@@ -15,8 +15,7 @@ pub struct Extent {
     pub optima: &'static [u32],
     /// Seeds of each size and class for the relations.
     pub seeds: u64,
-    /// Seeds of each size and class for optima: with two sizes and three classes or more, at least
-    /// thirty instances.
+    /// Seeds of each size and class for optima: with two sizes and five classes thirty instances.
     pub searched: u64,
 }
 
@@ -24,10 +23,12 @@ pub struct Extent {
 /// [`catalogue::generate`].
 #[must_use]
 pub fn extent(family: &str) -> Extent {
-    let of = |bounds, optima| Extent { bounds, optima, seeds: 10, searched: 5 };
+    let of = |bounds, optima| Extent { bounds, optima, seeds: 10, searched: 3 };
     match family {
         "atsp" => of(&[4, 6, 8], &[4, 5]),
-        "tsp" | "path" | "ufl" | "lot" => of(&[4, 6, 9], &[4, 7]),
+        "tsp" => of(&[4, 6, 8], &[4, 7]),
+        "path" | "ufl" | "lot" => of(&[4, 6, 9], &[4, 7]),
+        "qap" => of(&[2, 4, 6], &[2, 4]),
         _ => of(&[4, 5, 6], &[4, 5]),
     }
 }

@@ -70,3 +70,20 @@ fn what_is_wrong_reads_without_an_error() {
         assert_eq!(errors.count(), 0, "{}", path.display());
     }
 }
+
+/// Each kind of slip that is common is there: a family that lacks, a factor that is too small, a way
+/// that is open one way alone, a row for the depot too, a shift between 0 and 1.
+#[test]
+fn every_common_slip_is_among_them() {
+    let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join("../../crates/catalogue/tests/wrong");
+    let firsts: Vec<String> = files(&folder)
+        .iter()
+        .map(|path| std::fs::read_to_string(path).unwrap().lines().next().unwrap().to_owned())
+        .collect();
+    for (kind, at_least) in
+        [("dropped", 3), ("factor", 3), ("way back", 2), ("depot", 1), ("counted", 2)]
+    {
+        let found = firsts.iter().filter(|line| line.contains(kind)).count();
+        assert!(found >= at_least, "{kind}: {found}\n{}", firsts.join("\n"));
+    }
+}

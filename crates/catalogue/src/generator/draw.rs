@@ -36,17 +36,25 @@ impl Draw {
         order
     }
 
-    /// An amount from `least` on: anywhere in the range, around its ends and its middle for
-    /// clustered data, the least or one more for data of 0 and 1; none where points are meant.
-    pub(super) fn amount(&mut self, class: Class, least: i64, range: i64) -> Option<i64> {
-        match class {
-            Class::Uniform => Some(least + self.below(range)),
-            Class::Clustered => {
-                Some(least + self.below(3) * (range / 3) + self.below(range / 9 + 1))
-            }
-            Class::ZeroOne => Some(least + self.below(2)),
-            Class::Euclidean | Class::NearlySymmetric => None,
-        }
+    /// An amount from `least` on: anywhere in the range; around its ends and its middle for
+    /// clustered data; the least or one more for data of 0 and 1; as far as two points of a square
+    /// lie apart for Euclidean data; about the middle for data that are nearly alike.
+    pub(super) fn amount(&mut self, class: Class, least: i64, range: i64) -> i64 {
+        let above = match class {
+            Class::Uniform => self.below(range),
+            Class::Clustered => self.below(3) * (range / 3) + self.below(range / 9 + 1),
+            Class::ZeroOne => self.below(2),
+            Class::Euclidean => self.apart() * range / 1415,
+            Class::NearlySymmetric => range / 2 + self.below(range / 10 + 2),
+        };
+        least + above
+    }
+
+    /// How far two points of a square of side 1000 lie apart.
+    fn apart(&mut self) -> i64 {
+        let (across, along) =
+            (self.below(1000) - self.below(1000), self.below(1000) - self.below(1000));
+        rounded_root(across * across + along * along)
     }
 
     /// Points around three centres for clustered data, else anywhere.

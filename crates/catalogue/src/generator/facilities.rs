@@ -3,15 +3,13 @@
 use super::Class;
 use super::draw::Draw;
 
-/// Nearly symmetric costs mean nothing between two kinds of places.
-pub(super) fn sites(size: u32, class: Class, seed: u64) -> Option<String> {
-    // Opening costs about as much as serving a few clients.
+/// Opening costs about as much as serving a few clients.
+pub(super) fn sites(size: u32, class: Class, seed: u64) -> String {
     let (least, range) = match class {
         Class::Uniform => (60, 120),
-        Class::Euclidean => (400, 600),
+        Class::Euclidean | Class::NearlySymmetric => (400, 600),
         Class::Clustered => (200, 600),
         Class::ZeroOne => (1, 3),
-        Class::NearlySymmetric => return None,
     };
     let mut draw = Draw::new(seed);
     let facilities = draw.points(size, class);
@@ -30,5 +28,5 @@ pub(super) fn sites(size: u32, class: Class, seed: u64) -> Option<String> {
             text.push_str(&format!("{site} {place} {}\n", draw.cost(class, from, to)));
         }
     }
-    Some(text)
+    text
 }

@@ -7,6 +7,14 @@ use super::blocks::{Blocks, names};
 use super::draw::{Draw, Point};
 use super::listed::stable_sets;
 
+/// Whether edges are conflicts, and what for.
+#[derive(Clone, Copy, PartialEq, Eq)]
+enum Conflicts {
+    None,
+    Worths,
+    Colours,
+}
+
 /// Nodes, where they lie, and edges by their ends, the first before the second.
 struct Graph {
     nodes: Vec<String>,
@@ -15,25 +23,30 @@ struct Graph {
 }
 
 impl Graph {
-    /// None where costs are not the same both ways.
-    fn new(draw: &mut Draw, size: u32, class: Class, conflicts: bool) -> Option<Self> {
-        if class == Class::NearlySymmetric {
-            return None;
-        }
+    /// Of nearly symmetric conflicts some lie farther apart; those of data of 0 and 1 are many where
+    /// colours are wanted.
+    fn new(draw: &mut Draw, size: u32, class: Class, conflicts: Conflicts) -> Self {
         let points = draw.points(size, class);
-        let near = conflicts && matches!(class, Class::Euclidean | Class::Clustered);
+        let near = conflicts != Conflicts::None
+            && matches!(class, Class::Euclidean | Class::Clustered | Class::NearlySymmetric);
+        let dense = conflicts == Conflicts::Colours && class == Class::ZeroOne;
         let mut edges = Vec::new();
         for i in 0..points.len() {
             for j in i + 1..points.len() {
-                let drawn = draw.below(8) < 3;
+                let eighths = draw.below(8);
                 let (across, along) = (points[i].0 - points[j].0, points[i].1 - points[j].1);
-                let joined = if near { across * across + along * along < 400 * 400 } else { drawn };
+                let joined = if near {
+                    let farther = class == Class::NearlySymmetric && eighths == 0;
+                    farther || across * across + along * along < 400 * 400
+                } else {
+                    eighths < if dense { 5 } else { 3 }
+                };
                 if j == i + 1 || joined {
                     edges.push((i, j));
                 }
             }
         }
-        Some(Self { nodes: names('n', points.len()), points, edges })
+        Self { nodes: names('n', points.len()), points, edges }
     }
 
     /// Nodes and edges.
@@ -57,36 +70,36 @@ impl Graph {
 }
 
 /// A network with costs and a root.
-pub(super) fn tree(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn tree(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
-    let graph = Graph::new(&mut draw, size, class, false)?;
+    let graph = Graph::new(&mut draw, size, class, Conflicts::None);
     let mut out = graph.blocks();
     out.by("c", "i, j", &graph.costs(&mut draw, class));
     out.value("r", &graph.nodes[0]);
-    Some(out)
+    out
 }
 
 /// The same, with every other node to be connected.
-pub(super) fn steiner(size: u32, class: Class, seed: u64) -> Option<Blocks> {
-    let mut out = tree(size, class, seed)?;
+pub(super) fn steiner(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut out = tree(size, class, seed);
     let connected = names('n', size as usize).into_iter().step_by(2).collect::<Vec<_>>();
     out.list("R", &connected);
-    Some(out)
+    out
 }
 
 /// A network with a worth for each edge.
-pub(super) fn worths(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn worths(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
-    let graph = Graph::new(&mut draw, size, class, false)?;
+    let graph = Graph::new(&mut draw, size, class, Conflicts::None);
     let mut out = graph.blocks();
     out.by("w", "i, j", &graph.costs(&mut draw, class));
-    Some(out)
+    out
 }
 
 /// Conflicts between nodes, each node with a worth.
-pub(super) fn conflicts(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn conflicts(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
-    let graph = Graph::new(&mut draw, size, class, true)?;
+    let graph = Graph::new(&mut draw, size, class, Conflicts::Worths);
     let mut out = graph.blocks();
     let mut worths = Vec::new();
     for node in &graph.nodes {
@@ -94,15 +107,12 @@ pub(super) fn conflicts(size: u32, class: Class, seed: u64) -> Option<Blocks> {
         worths.push(format!("{node} {worth}"));
     }
     out.by("w", "i", &worths);
-    Some(out)
+    out
 }
 
 /// Conflicts between nodes, and one colour more than the conflicts of the busiest.
-pub(super) fn colours(size: u32, class: Class, seed: u64) -> Option<Blocks> {
-    if class == Class::ZeroOne {
-        return None;
-    }
-    let graph = Graph::new(&mut Draw::new(seed), size, class, true)?;
+pub(super) fn colours(size: u32, class: Class, seed: u64) -> Blocks {
+    let graph = Graph::new(&mut Draw::new(seed), size, class, Conflicts::Colours);
     let mut degrees = vec![0; graph.nodes.len()];
     for &(i, j) in &graph.edges {
         degrees[i] += 1;
@@ -111,5 +121,5 @@ pub(super) fn colours(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     let mut out = graph.blocks();
     out.value("h", degrees.iter().max().unwrap_or(&0) + 1);
     stable_sets(&mut out, &graph.nodes, &graph.edges);
-    Some(out)
+    out
 }

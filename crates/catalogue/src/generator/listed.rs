@@ -1,5 +1,6 @@
 //! What a form with a column for each plan of a part takes as data: all rounds that a vehicle
-//! holds, all lists of jobs that an agent does, all stable sets that hold no further node.
+//! holds, all lists of jobs that an agent does, all stable sets that hold no further node, all paths
+//! between two nodes, all groups of items.
 
 use super::blocks::{Blocks, names};
 
@@ -102,6 +103,48 @@ pub(super) fn stable_sets(out: &mut Blocks, nodes: &[String], edges: &[(usize, u
     out.by("a", "i, p", &marks);
 }
 
+/// All paths that meet no node twice, of each pair of ends, as blocks `P`, `B` and `R`: a
+/// depth-first search. Their number grows exponentially with the nodes.
+pub(super) fn paths(
+    out: &mut Blocks,
+    nodes: &[String],
+    arcs: &[(usize, usize)],
+    pairs: &[(usize, usize)],
+) {
+    let (mut owners, mut rows, mut found) = (Vec::new(), Vec::new(), 0);
+    let listed = if nodes.len() > MOST { &[][..] } else { pairs };
+    for &(from, to) in listed {
+        let mut open = vec![vec![from]];
+        while let Some(path) = open.pop() {
+            let last = path[path.len() - 1];
+            if last != to {
+                let ahead = arcs.iter().filter(|(i, j)| *i == last && !path.contains(j));
+                open.extend(ahead.map(|&(_, j)| [path.as_slice(), &[j]].concat()));
+                continue;
+            }
+            found += 1;
+            owners.push(format!("p{found} {} {}", nodes[from], nodes[to]));
+            let steps = path.windows(2);
+            rows.extend(
+                steps.map(|step| format!("p{found} {} {}", nodes[step[0]], nodes[step[1]])),
+            );
+        }
+    }
+    out.list("P", &names('p', found));
+    out.by("B", "p, s, t", &owners);
+    out.by("R", "p, i, j", &rows);
+}
+
+/// All groups of items but none, as blocks `Q` and `a`. `O(2ⁿ n)`.
+pub(super) fn groups(out: &mut Blocks, items: &[String]) {
+    let mut marks = Vec::new();
+    for set in sets(items.len()) {
+        marks.extend(members(set, items.len()).map(|i| format!("{} q{set} 1", items[i])));
+    }
+    out.list("Q", &names('q', sets(items.len()).len()));
+    out.by("a", "i, q", &marks);
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -120,6 +163,24 @@ mod tests {
         rounds(&mut out, &names('n', 3), &costs, (&[0, 2, 2], 4));
         let rows = "p1 n2 n1\np1 n1 n2\np2 n3 n1\np2 n1 n3\np3 n2 n1\np3 n3 n2\np3 n1 n3";
         assert_eq!(out.text(), format!("P\np1 p2 p3\n\nR by p, i, j\n{rows}\n\n"));
+    }
+
+    #[test]
+    fn paths_meet_no_node_twice() {
+        let mut out = Blocks::new();
+        let arcs = [(0, 1), (1, 0), (1, 2), (0, 2), (2, 0)];
+        paths(&mut out, &names('n', 3), &arcs, &[(0, 2)]);
+        let text = "P\np1 p2\n\nB by p, s, t\np1 n1 n3\np2 n1 n3\n\n\
+            R by p, i, j\np1 n1 n3\np2 n1 n2\np2 n2 n3\n\n";
+        assert_eq!(out.text(), text);
+    }
+
+    #[test]
+    fn two_items_make_three_groups() {
+        let mut out = Blocks::new();
+        groups(&mut out, &names('n', 2));
+        let text = "Q\nq1 q2 q3\n\na by i, q\nn1 q1 1\nn2 q2 1\nn1 q3 1\nn2 q3 1\n\n";
+        assert_eq!(out.text(), text);
     }
 
     #[test]

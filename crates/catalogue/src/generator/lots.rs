@@ -4,11 +4,7 @@
 use super::Class;
 use super::draw::Draw;
 
-/// Distances mean nothing between periods.
-pub(super) fn periods(size: u32, class: Class, seed: u64) -> Option<String> {
-    if matches!(class, Class::Euclidean | Class::NearlySymmetric) {
-        return None;
-    }
+pub(super) fn periods(size: u32, class: Class, seed: u64) -> String {
     let mut draw = Draw::new(seed);
     let periods: Vec<String> = (1..=size).map(|t| t.to_string()).collect();
     let mut text = format!("T\n{}\n", periods.join(" "));
@@ -23,7 +19,7 @@ pub(super) fn periods(size: u32, class: Class, seed: u64) -> Option<String> {
     block('f', &mut |draw| set_up.0 + draw.below(set_up.1));
     block('p', &mut |draw| 1 + draw.below(4));
     block('h', &mut |draw| 1 + draw.below(2));
-    Some(text)
+    text
 }
 
 /// Clustered: two periods of three are without demand.
@@ -32,6 +28,7 @@ fn demand(draw: &mut Draw, class: Class) -> i64 {
         Class::ZeroOne => draw.below(2),
         Class::Clustered if draw.below(3) > 0 => 0,
         Class::Clustered => 60 + draw.below(120),
-        _ => draw.below(100),
+        Class::Uniform => draw.below(100),
+        Class::Euclidean | Class::NearlySymmetric => draw.amount(class, 0, 100),
     }
 }

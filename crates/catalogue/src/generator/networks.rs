@@ -4,7 +4,7 @@
 use super::Class;
 use super::blocks::{Blocks, names};
 use super::draw::Draw;
-use super::listed::rounds;
+use super::listed::{paths, rounds};
 
 /// Rounds from the first place: demands above 0, and vehicles that hold about two fifths of all.
 pub(super) fn vehicles(size: u32, class: Class, seed: u64) -> Blocks {
@@ -35,14 +35,32 @@ pub(super) fn vehicles(size: u32, class: Class, seed: u64) -> Blocks {
 }
 
 /// Arcs from each node to the next, in a ring, and some two more to others; as many pairs with
-/// goods as there are nodes. To build costs about as much as to carry a few units.
+/// goods as there are nodes, with all paths of each. To build costs about as much as to carry a
+/// few units.
 pub(super) fn design(size: u32, class: Class, seed: u64) -> Blocks {
+    let (mut out, arcs, pairs) = traffic(&mut Draw::new(seed), size, class);
+    paths(&mut out, &names('n', size as usize), &arcs, &pairs);
+    out
+}
+
+/// The same without paths; a line carries some two pairs.
+pub(super) fn lines(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
+    let (mut out, ..) = traffic(&mut draw, size / 2 + 2, class);
+    out.value("Q", 8 + draw.below(5));
+    out
+}
+
+type Ends = Vec<(usize, usize)>;
+
+/// The network and what it carries, with its arcs and pairs.
+fn traffic(draw: &mut Draw, size: u32, class: Class) -> (Blocks, Ends, Ends) {
     let points = draw.points(size, class);
     let (count, others) = (points.len(), i64::from(size));
     let nodes = names('n', count);
     let (mut arcs, mut building, mut carrying) = (Vec::new(), Vec::new(), Vec::new());
     let (mut pairs, mut units) = (Vec::new(), Vec::new());
+    let (mut ways, mut ends) = (Ends::new(), Ends::new());
     for i in 0..count {
         for j in (0..count).filter(|&j| j != i) {
             let name = format!("{} {}", nodes[i], nodes[j]);
@@ -51,10 +69,12 @@ pub(super) fn design(size: u32, class: Class, seed: u64) -> Blocks {
                 building.push(format!("{name} {}", 3 * cost + 1 + draw.below(20)));
                 carrying.push(format!("{name} {cost}"));
                 arcs.push(name.clone());
+                ways.push((i, j));
             }
             if j == (i + 2) % count || draw.below(2 * others) == 0 {
                 units.push(format!("{name} {}", 1 + draw.below(9)));
                 pairs.push(name);
+                ends.push((i, j));
             }
         }
     }
@@ -65,7 +85,7 @@ pub(super) fn design(size: u32, class: Class, seed: u64) -> Blocks {
     out.by("c", "i, j", &carrying);
     out.by("K", "s, t", &pairs);
     out.by("d", "s, t", &units);
-    out
+    (out, ways, ends)
 }
 
 /// From each node an arc to the next, which is long and takes little, and some two more to

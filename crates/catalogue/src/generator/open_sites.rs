@@ -6,10 +6,7 @@ use super::blocks::{Blocks, names};
 use super::draw::Draw;
 
 /// Facilities and clients, and what it costs to serve each from each.
-fn places(draw: &mut Draw, size: u32, class: Class, cost: &str) -> Option<Blocks> {
-    if class == Class::NearlySymmetric {
-        return None;
-    }
+fn places(draw: &mut Draw, size: u32, class: Class, cost: &str) -> Blocks {
     let (facilities, clients) = (draw.points(size, class), draw.points(2 * size, class));
     let (sites, places) = (names('f', facilities.len()), names('c', clients.len()));
     let mut costs = Vec::new();
@@ -22,7 +19,7 @@ fn places(draw: &mut Draw, size: u32, class: Class, cost: &str) -> Option<Blocks
     out.list("I", &sites);
     out.list("J", &places);
     out.by(cost, "i, j", &costs);
-    Some(out)
+    out
 }
 
 /// A number of each name, drawn from `least` on.
@@ -31,30 +28,30 @@ fn drawn(draw: &mut Draw, names: &[String], least: i64, range: i64) -> Vec<Strin
 }
 
 /// All facilities together serve at least twice the demand.
-pub(super) fn limited(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn limited(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
-    let mut out = places(&mut draw, size, class, "c")?;
+    let mut out = places(&mut draw, size, class, "c");
     let (sites, clients) = (names('f', size as usize), names('c', 2 * size as usize));
     let opening = if class == Class::ZeroOne { (1, 3) } else { (200, 400) };
     out.by("f", "i", &drawn(&mut draw, &sites, opening.0, opening.1));
     // Twice as many clients as facilities, and at most 20 each.
     out.by("q", "i", &drawn(&mut draw, &sites, 80, 41));
     out.by("d", "j", &drawn(&mut draw, &clients, 1, 20));
-    Some(out)
+    out
 }
 
 /// A third of the sites may open; clients have weights.
-pub(super) fn median(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn median(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
-    let mut out = places(&mut draw, size, class, "d")?;
+    let mut out = places(&mut draw, size, class, "d");
     out.by("w", "j", &drawn(&mut draw, &names('c', 2 * size as usize), 1, 9));
     out.value("p", size.div_ceil(3));
-    Some(out)
+    out
 }
 
 /// A third of the sites may open.
-pub(super) fn centre(size: u32, class: Class, seed: u64) -> Option<Blocks> {
-    let mut out = places(&mut Draw::new(seed), size, class, "d")?;
+pub(super) fn centre(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut out = places(&mut Draw::new(seed), size, class, "d");
     out.value("p", size.div_ceil(3));
-    Some(out)
+    out
 }

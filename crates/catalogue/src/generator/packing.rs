@@ -6,12 +6,12 @@ use super::draw::Draw;
 use super::listed::lists;
 
 /// Pieces from a fifth to three fifths of a bin, and every pattern that leaves no room for a piece.
-pub(super) fn bins(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn bins(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let length = 24 + draw.below(8);
     let mut lengths = Vec::new();
     for _ in 0..size {
-        lengths.push(draw.amount(class, length / 5 + 1, length / 2 - 4)?);
+        lengths.push(draw.amount(class, length / 5 + 1, length / 2 - 4));
     }
     if class == Class::ZeroOne {
         lengths.iter_mut().for_each(|one| *one += length / 5);
@@ -26,7 +26,7 @@ pub(super) fn bins(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     blocks.table(("a", "i, p"), (&sizes, &names), |i, p| {
         Some(patterns[p][i]).filter(|&count| count > 0)
     });
-    Some(blocks)
+    blocks
 }
 
 /// All ways to fill a bin so that no piece fits in what is left.
@@ -51,29 +51,46 @@ fn patterns(lengths: &[i64], room: i64) -> Vec<Vec<i64>> {
 }
 
 /// Worth is weight and a little on top; half of all weight can be carried.
-pub(super) fn knapsack(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn knapsack(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let mut weights = Vec::new();
     for _ in 0..size {
-        weights.push(draw.amount(class, 10, 90)?);
+        weights.push(draw.amount(class, 10, 90));
     }
     let mut blocks = Blocks::new();
     let items = blocks.labels("I", 'i', size as usize);
     blocks.column(("c", "i"), &items, |k| weights[k] + draw.below(20));
     blocks.column(("a", "i"), &items, |k| weights[k]);
     blocks.value("b", weights.iter().sum::<i64>() / 2);
-    Some(blocks)
+    blocks
+}
+
+/// Three resources; worth is what is taken of all and a little on top, and half of all can be had.
+pub(super) fn several(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut draw = Draw::new(seed);
+    let mut blocks = Blocks::new();
+    let items = blocks.labels("I", 'i', size as usize);
+    let resources = blocks.labels("R", 'r', 3);
+    let mut taken = vec![vec![0; items.len()]; resources.len()];
+    for cell in taken.iter_mut().flatten() {
+        *cell = draw.amount(class, 5, 45);
+    }
+    let all = |i: usize| taken.iter().map(|row| row[i]).sum::<i64>();
+    blocks.column(("c", "i"), &items, |i| all(i) / 3 + draw.below(20));
+    blocks.table(("a", "r, i"), (&resources, &items), |r, i| Some(taken[r][i]));
+    blocks.column(("b", "r"), &resources, |r| taken[r].iter().sum::<i64>() / 2);
+    blocks
 }
 
 /// Three agents; jobs dealt out in turn fit, with little to spare.
-pub(super) fn agents(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn agents(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let mut blocks = Blocks::new();
     let agents = blocks.labels("I", 'm', 3);
     let jobs = blocks.labels("J", 'j', size as usize);
     let mut hours = vec![vec![0; jobs.len()]; agents.len()];
     for cell in hours.iter_mut().flatten() {
-        *cell = draw.amount(class, 5, 20)?;
+        *cell = draw.amount(class, 5, 20);
     }
     blocks.table(("c", "i, j"), (&agents, &jobs), |_, _| Some(10 + draw.below(41)));
     blocks.table(("a", "i, j"), (&agents, &jobs), |i, j| Some(hours[i][j]));
@@ -83,11 +100,11 @@ pub(super) fn agents(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     }
     blocks.column(("b", "i"), &agents, |i| there[i]);
     lists(&mut blocks, (&agents, &jobs), &hours, &there);
-    Some(blocks)
+    blocks
 }
 
 /// Twice as many choices as rows; most choices cover two rows, each row has one choice or more.
-pub(super) fn covers(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn covers(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let mut blocks = Blocks::new();
     let rows = blocks.labels("I", 'r', size as usize);
@@ -99,9 +116,9 @@ pub(super) fn covers(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     }
     let mut costs = Vec::new();
     for _ in &choices {
-        costs.push(draw.amount(class, 2, 8)?);
+        costs.push(draw.amount(class, 2, 8));
     }
     blocks.table(("a", "i, j"), (&rows, &choices), |i, j| covered[i][j].then_some(1));
     blocks.column(("c", "j"), &choices, |j| costs[j]);
-    Some(blocks)
+    blocks
 }

@@ -2,6 +2,7 @@
 //! there is an arc to the next, and some two more to others.
 
 use super::Class;
+use super::blocks::{Blocks, names};
 use super::draw::Draw;
 
 pub(super) fn network(size: u32, class: Class, seed: u64) -> String {
@@ -21,4 +22,34 @@ pub(super) fn network(size: u32, class: Class, seed: u64) -> String {
     }
     text.push_str(&format!("\ns = n1\nt = n{size}\n"));
     text
+}
+
+/// Lengths of either sign, so that circles of gain are about; from each node there is an arc to
+/// the next, so that the end can be reached.
+pub(super) fn with_gains(size: u32, class: Class, seed: u64) -> Blocks {
+    let middle = match class {
+        Class::Uniform => 50,
+        Class::Clustered => 300,
+        Class::Euclidean | Class::NearlySymmetric => 450,
+        Class::ZeroOne => 1,
+    };
+    let mut draw = Draw::new(seed);
+    let points = draw.points(size, class);
+    let (nodes, others) = (names('n', points.len()), i64::from(size));
+    let mut lengths = Vec::new();
+    for (i, from) in nodes.iter().enumerate() {
+        for (j, to) in nodes.iter().enumerate().filter(|&(j, _)| j != i) {
+            if j == i + 1 || draw.below(others) < 3 {
+                let cost = draw.cost(class, points[i], points[j]);
+                let length = if class == Class::ZeroOne { 2 * cost - 1 } else { cost - middle };
+                lengths.push(format!("{from} {to} {length}"));
+            }
+        }
+    }
+    let mut out = Blocks::new();
+    out.list("V", &nodes);
+    out.by("c", "i, j", &lengths);
+    out.value("s", &nodes[0]);
+    out.value("t", &nodes[nodes.len() - 1]);
+    out
 }

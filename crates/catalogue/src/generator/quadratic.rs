@@ -1,4 +1,5 @@
-//! Quadratic assignment: loads between plants, ways between places.
+//! Quadratic assignment: loads between plants, ways between places; and decisions of which two
+//! together are worth something.
 
 use super::Class;
 use super::blocks::{Blocks, halved};
@@ -14,6 +15,28 @@ pub(super) fn plants(size: u32, class: Class, seed: u64) -> Blocks {
     blocks.table(("f", "i, j"), (&plants, &plants), |i, j| (i != j).then(|| draw.below(6)));
     blocks.table(("d", "k, l"), (&places, &places), |k, l| {
         (k != l).then(|| draw.cost(class, points[k], points[l]))
+    });
+    blocks
+}
+
+/// Worth of either sign, about as often below 0 as above.
+pub(super) fn decisions(size: u32, class: Class, seed: u64) -> Blocks {
+    let middle = match class {
+        Class::Uniform => 50,
+        Class::Clustered => 300,
+        Class::Euclidean | Class::NearlySymmetric => 450,
+        Class::ZeroOne => 1,
+    };
+    let mut draw = Draw::new(seed);
+    let points = draw.points(size, class);
+    let mut blocks = Blocks::new();
+    let all = blocks.labels("V", 'v', points.len());
+    blocks.column(("p", "i"), &all, |_| draw.below(2 * middle + 1) - middle);
+    blocks.table(("q", "i, j"), (&all, &all), |i, j| {
+        (i < j).then(|| {
+            let cost = draw.cost(class, points[i], points[j]);
+            if class == Class::ZeroOne { 2 * cost - 1 } else { cost - middle }
+        })
     });
     blocks
 }

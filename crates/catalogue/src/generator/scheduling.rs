@@ -5,11 +5,11 @@ use super::blocks::{Blocks, halved};
 use super::draw::Draw;
 
 /// Releases spread over half of all times.
-pub(super) fn machine(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn machine(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let mut times = Vec::new();
     for _ in 0..size {
-        times.push(draw.amount(class, 1, 6)?);
+        times.push(draw.amount(class, 1, 6));
     }
     let spread = times.iter().sum::<i64>() / 2 + 1;
     let mut blocks = Blocks::new();
@@ -17,18 +17,31 @@ pub(super) fn machine(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     blocks.column(("p", "j"), &jobs, |j| times[j]);
     blocks.column(("r", "j"), &jobs, |_| draw.below(spread));
     blocks.column(("w", "j"), &jobs, |_| 1 + draw.below(9));
-    Some(blocks)
+    blocks
+}
+
+/// Due after the job's own time and up to three quarters of all.
+pub(super) fn due(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut draw = Draw::new(seed);
+    let times: Vec<i64> = (0..size).map(|_| draw.amount(class, 1, 6)).collect();
+    let spread = times.iter().sum::<i64>() * 3 / 4 + 1;
+    let mut blocks = Blocks::new();
+    let jobs = blocks.labels("J", 'j', size as usize);
+    blocks.column(("p", "j"), &jobs, |j| times[j]);
+    blocks.column(("d", "j"), &jobs, |j| std::cmp::max(times[j], draw.below(spread)));
+    blocks.column(("w", "j"), &jobs, |_| 1 + draw.below(9));
+    blocks
 }
 
 /// Three machines, a random route for each job; the horizon is that of the jobs taken in turn.
-pub(super) fn job_shop(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn job_shop(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let mut blocks = Blocks::new();
     let jobs = blocks.labels("J", 'j', halved(size) - 1);
     let machines = blocks.labels("M", 'm', 3);
     let mut times = vec![vec![0; machines.len()]; jobs.len()];
     for cell in times.iter_mut().flatten() {
-        *cell = draw.amount(class, 1, 4)?;
+        *cell = draw.amount(class, 1, 4);
     }
     let routes: Vec<Vec<usize>> = jobs.iter().map(|_| draw.order(machines.len())).collect();
     let mut steps = Vec::new();
@@ -46,19 +59,19 @@ pub(super) fn job_shop(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     blocks.by("N", "j, m, l", &steps);
     blocks.table(("p", "j, m"), (&jobs, &machines), |j, m| Some(times[j][m]));
     blocks.value("H", ready.into_iter().max().unwrap_or(0));
-    Some(blocks)
+    blocks
 }
 
 /// Two resources of six; the horizon is that of the activities taken one after another, each as
 /// soon as it fits.
-pub(super) fn project(size: u32, class: Class, seed: u64) -> Option<Blocks> {
+pub(super) fn project(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let mut blocks = Blocks::new();
     let activities = blocks.labels("J", 'j', size as usize);
     let count = activities.len();
     let mut plan = Project::default();
     for j in 0..count {
-        plan.times.push(draw.amount(class, 1, 4)?);
+        plan.times.push(draw.amount(class, 1, 4));
         plan.needs.push([draw.below(5), draw.below(5)]);
         let before: Vec<usize> = (0..j).filter(|_| draw.below(i64::from(size)) < 2).collect();
         let first = j > 0 && before.is_empty() && j + 1 == count;
@@ -77,7 +90,7 @@ pub(super) fn project(size: u32, class: Class, seed: u64) -> Option<Blocks> {
     });
     blocks.column(("B", "k"), &resources, |_| Project::THERE);
     blocks.value("H", horizon);
-    Some(blocks)
+    blocks
 }
 
 #[derive(Default)]

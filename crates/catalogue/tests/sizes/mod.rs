@@ -117,7 +117,7 @@ fn sites(id: &str, instance: &Instance) -> Option<Size> {
         "cfl/split" => (i * j + i, j + i + i * j, 0),
         "p-median/joined" => (i * j + i, j + i + 1, 0),
         "p-median/split" => (i * j + i, j + i * j + 1, 0),
-        "p-median/radius" => {
+        "p-median/radius" | "p-median/chained-radius" => {
             let radii = distances(instance).1 - j;
             (i + radii, radii + 1, 0)
         }

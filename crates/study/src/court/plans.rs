@@ -2,11 +2,12 @@
 
 use std::rc::Rc;
 
-use model::{ColumnId, Model, Number};
+use model::{ColumnId, Model};
 use record::results::SolutionEntry;
 use tree::{Conflict, ConflictLimits, Status};
 
 use super::Case;
+use crate::lift::{held, rounded};
 use crate::shared::Shared;
 
 /// Values within so much of a whole number are that number.
@@ -62,25 +63,16 @@ impl Placed {
     }
 }
 
-fn rounded(value: f64) -> f64 {
-    if (value - value.round()).abs() < WHOLE { value.round() + 0.0 } else { value }
-}
-
 /// The rival at `side` with the deciding part of a plan fixed.
 pub(crate) fn fixed(case: &Case<'_>, plan: &Placed, side: usize) -> Model {
     let [a, b] = case.rivals;
     let deciding = case.shared.deciding(&a.model, &b.model);
     let own = |pair: &(ColumnId, ColumnId)| if side == 0 { pair.0 } else { pair.1 };
-    let mut bounds = Vec::new();
-    for (pair, value) in &plan.values {
-        if deciding.binary_search(pair).is_ok() {
-            let value = Number::try_from(rounded(*value)).ok();
-            bounds.push((own(pair), value.clone(), value));
-        }
-    }
-    let zero = || Some(Number::ZERO);
-    bounds.extend(case.shared.only[side].iter().map(|&column| (column, zero(), zero())));
-    case.rivals[side].model.bounded(&bounds)
+    let is_deciding = |pair: &(ColumnId, ColumnId)| deciding.binary_search(pair).is_ok();
+    let decided = plan.values.iter().filter(|(pair, _)| is_deciding(pair));
+    let decided = decided.map(|(pair, value)| (own(pair), *value));
+    let others = case.shared.only[side].iter().map(|&column| (column, 0.0));
+    held(&case.rivals[side].model, &decided.chain(others).collect::<Vec<_>>())
 }
 
 /// Puts a plan into the rival at `side`.

@@ -9,6 +9,7 @@
 
 pub mod falsify;
 pub mod golden;
+pub mod graphs;
 pub mod independent;
 pub mod kernel;
 pub mod parts;

@@ -10,6 +10,7 @@
 
 use std::collections::BTreeMap;
 
+use hullward_tests_reference::graphs::{Edges, graph, names, network};
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::round_trip::{formulation, instance, rival, root, solve, values};
 use hullward_tests_reference::{agree, open_data};
@@ -203,10 +204,6 @@ fn row(letter: &str, cells: &[f64]) -> String {
     cells.iter().enumerate().map(|(k, value)| format!("{letter}{k} {value}\n")).collect()
 }
 
-fn names(letter: &str, count: usize) -> String {
-    (0..count).map(|k| format!("{letter}{k}")).collect::<Vec<_>>().join(" ")
-}
-
 /// `gap1-2`: the second problem of the first file, to be maximised.
 fn agents(record: &Record) -> Option<f64> {
     if !record.is("generalised assignment (max)") || record.formulation.contains("Dantzig") {
@@ -365,75 +362,6 @@ fn latest() -> f64 {
     value_of(&text, &on, false)
 }
 
-type Edges = Vec<(usize, usize)>;
-
-fn circle(count: usize) -> Edges {
-    (0..count).map(|i| (i, (i + 1) % count)).collect()
-}
-
-fn queens(side: usize) -> Edges {
-    let place = |k: usize| (k / side, k % side);
-    let beats = |a: usize, b: usize| {
-        let ((r, c), (s, d)) = (place(a), place(b));
-        r == s || c == d || r.abs_diff(s) == c.abs_diff(d)
-    };
-    let all = side * side;
-    (0..all).flat_map(|a| (a + 1..all).map(move |b| (a, b))).filter(|&(a, b)| beats(a, b)).collect()
-}
-
-/// Of Mycielski (1955): a copy of each node beside the node's neighbours, and one node beside all
-/// copies.
-fn mycielski(count: usize, edges: &Edges) -> Edges {
-    let mut out = edges.clone();
-    for &(a, b) in edges {
-        out.extend([(a, count + b), (b, count + a)]);
-    }
-    out.extend((0..count).map(|i| (count + i, 2 * count)));
-    out
-}
-
-/// The generalised Petersen graph: an outer circle, spokes, an inner star of steps of two.
-fn petersen(count: usize) -> Edges {
-    let star = (0..count).map(|i| (count + i, count + (i + 2) % count));
-    circle(count).into_iter().chain((0..count).map(|i| (i, count + i))).chain(star).collect()
-}
-
-fn icosahedron() -> Edges {
-    let mut out: Edges = (1..6).flat_map(|i| [(0, i), (i, i % 5 + 1)]).collect();
-    out.extend((1..6).flat_map(|i| [(i, i + 5), (i, i % 5 + 6)]));
-    out.extend((6..11).flat_map(|i| [(i, (i - 5) % 5 + 6), (i, 11)]));
-    out
-}
-
-fn graph(name: &str) -> Option<(usize, Edges)> {
-    Some(match name {
-        "C5" | "C5_myciel2" => (5, circle(5)),
-        "C7" => (7, circle(7)),
-        "K5" => (5, (0..5).flat_map(|a| (a + 1..5).map(move |b| (a, b))).collect()),
-        "Petersen" => (10, petersen(5)),
-        "W5_wheel(hub+C5)" => (6, circle(5).into_iter().chain((0..5).map(|i| (i, 5))).collect()),
-        "C7_complement" => {
-            let apart = |a: usize, b: usize| b - a > 1 && b - a < 6;
-            let pairs = (0..7).flat_map(|a| (a + 1..7).map(move |b| (a, b)));
-            (7, pairs.filter(|&(a, b)| apart(a, b)).collect())
-        }
-        "Grotzsch" | "myciel3" => (11, mycielski(5, &circle(5))),
-        "myciel4" => (23, mycielski(11, &mycielski(5, &circle(5)))),
-        "K33" => (6, (0..3).flat_map(|a| (3..6).map(move |b| (a, b))).collect()),
-        "queen5" | "queen5_5" => (25, queens(5)),
-        "queen7_7" => (49, queens(7)),
-        "queen8" => (64, queens(8)),
-        "icosahedron" => (12, icosahedron()),
-        "dodecahedron" => (20, petersen(10)),
-        _ => return None,
-    })
-}
-
-fn network(count: usize, edges: &Edges) -> String {
-    let edges: String = edges.iter().map(|(a, b)| format!("n{a} n{b}\n")).collect();
-    format!("V\n{}\n\nE by i, j\n{edges}\n", names("n", count))
-}
-
 fn stable(record: &Record) -> Option<f64> {
     if !record.is("stable set") || record.instance == "queen8" && !whole() {
         return None;
@@ -531,17 +459,17 @@ fn bent(record: &Record) -> Option<f64> {
         (&[0.0, 3.0, 4.0, 6.0, 8.0], &[0.0, 9.0, 10.0, 18.0, 26.0]),
         (&[0.0, 1.0, 2.0, 3.5, 6.0], &[0.0, 5.0, 6.4, 8.5, 12.0]),
     ];
-    let table = |part: fn(&(&[f64], &[f64])) -> Vec<f64>| -> String {
-        let rows = curves.iter().enumerate().flat_map(move |(i, curve)| {
-            let cells = part(curve).into_iter().enumerate();
+    let table = |ends: [&[f64]; 3]| -> String {
+        let rows = ends.iter().enumerate().flat_map(|(i, cells)| {
+            let cells = cells.iter().enumerate();
             cells.map(move |(k, value)| format!("s{i} {k} {value}\n"))
         });
         rows.collect()
     };
     let on = instance(&format!(
         "I\ns0 s1 s2\n\nK\n1 2 3 4\n\nB by i, k\n{}\nF by i, k\n{}\nd = 14\n",
-        table(|curve| curve.0.to_vec()),
-        table(|curve| curve.1.to_vec()),
+        table(curves.map(|curve| curve.0)),
+        table(curves.map(|curve| curve.1)),
     ));
     let form = match record.formulation.as_str() {
         "multiple choice" => "multiple-choice",

@@ -26,6 +26,7 @@ pub mod families;
 pub mod growth;
 pub mod infeasibility;
 pub mod ladder;
+pub mod lift;
 mod maximise;
 pub mod numerics;
 pub mod order;

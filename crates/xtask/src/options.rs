@@ -214,6 +214,6 @@ mod tests {
             assert!(read(line).is_err(), "{line}");
         }
         let Err(fault) = read("test --only x") else { panic!("accepted") };
-        assert!(fault.to_string().contains("native, counts, page, browser and reference"));
+        assert!(fault.to_string().contains("browser, firefox and reference"));
     }
 }

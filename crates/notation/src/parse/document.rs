@@ -343,7 +343,9 @@ impl Parser<'_> {
         } else {
             self.text.get(from.span.start as usize + usize::from(comma)..to as usize)?
         };
-        let text = text.split('\n').next().unwrap_or("").trim();
+        // An environment that begins or ends there ends the line, as the lexer has it.
+        let ends = ["\n", "\\begin{", "\\end{"].iter().filter_map(|end| text.find(end)).min();
+        let text = text[..ends.unwrap_or(text.len())].trim();
         let end = text.char_indices().nth(REMARK_LIMIT).map_or(text.len(), |(at, _)| at);
         let text = text[..end].trim();
         (!text.is_empty()).then(|| text.to_owned())

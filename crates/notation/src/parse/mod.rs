@@ -297,6 +297,7 @@ mod tests {
         assert_eq!(remark("V, the stops").as_deref(), Some("the stops"));
         assert_eq!(remark("c_{i,j}  ∀ (i,j) ∈ A    minutes").as_deref(), Some("minutes"));
         assert_eq!(remark("V \\text{stops}").as_deref(), Some("stops"));
+        assert_eq!(remark("V  stops\\end{align} of it").as_deref(), Some("stops"));
         assert_eq!(remark("s, t ∈ V").as_deref(), None);
         let definition =
             |line: &str| read(&format!("definitions\n {line}\nminimise x")).definitions[0].clone();

@@ -49,7 +49,11 @@ async fn a_rival_is_taken_away_as_the_command_writes_it() -> Outcome<()> {
         status(browser, "C", "root solved").await?;
         browser.script(CATCH).await?;
         for letter in ["A", "C"] {
-            browser.still(&format!("[data-lane={letter}] .take summary")).await?.click().await?;
+            browser
+                .still(&format!("[data-lane={letter}] [data-testid=take] summary"))
+                .await?
+                .click()
+                .await?;
             for (ending, form) in [("mps", "mps"), ("tex", "latex"), ("txt", "text")] {
                 let (name, saved) = taken(browser, letter, ending).await?;
                 assert!(

@@ -4,6 +4,7 @@
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a test ends where it fails")]
 
 mod further;
+mod holdings;
 mod planned;
 
 use std::collections::BTreeMap;

@@ -72,7 +72,7 @@ impl Pair<'_> {
     }
 
     /// Whether the relaxation of `inner`, in the shared variables, lies within that of `outer`: row
-    /// by row where the latter lives in the shared variables, else by an affine map.
+    /// by row, where the latter lives in the shared variables.
     async fn within(&self, inner: &Subject, outer: &Subject, shared: &Shared) -> Certificate {
         let refused = |why| Certificate { why, ..Certificate::default() };
         if let Some(why) = obstacle(inner, outer, shared) {

@@ -90,7 +90,7 @@ const LEFT: [(&str, &str, &str); 22] = [
         "its amounts are bounded piece by piece in other rows: restated.rs",
     ),
     ("piecewise linear", "locally", "observed on random objectives of another program"),
-    ("network", "", "an exercise whose arcs are not in the list"),
+    ("network", "", "an exercise that was not stated again"),
     (
         "graph colouring",
         "chromatic",
@@ -107,7 +107,7 @@ const LEFT: [(&str, &str, &str); 22] = [
     ("p-median", "", "pmed1 is held in published.rs; pmed5 has 10,000 links"),
     ("min-weight perfect matching", "", "beyond fifty nodes: behind HULLWARD_WHOLE"),
     ("stable set", "", "cliques of a chessboard: behind HULLWARD_WHOLE"),
-    ("CFL", "", "beyond sixteen sites: behind HULLWARD_WHOLE"),
+    ("CFL", "", "beyond sixteen sites: too long for a test, cap51 aside (HULLWARD_WHOLE)"),
 ];
 
 fn whole() -> bool {
@@ -538,10 +538,6 @@ fn held(record: &Record) -> Option<f64> {
     checks.iter().find_map(|check| check(record))
 }
 
-fn shop(record: &Record) -> bool {
-    record.is("job shop") && record.formulation.starts_with("time-indexed")
-}
-
 /// Why a value is not held here; `None` where nobody has said.
 fn elsewhere(record: &Record, trips: &[(String, String, f64)]) -> Option<String> {
     let same = |trip: &(String, String, f64)| {
@@ -577,7 +573,6 @@ fn every_value_of_the_list_is_held_or_it_is_said_why_not() {
             Some(found) => wrong.push(format!("{name}: {found} for {}", record.number())),
             None => match elsewhere(record, &trips) {
                 Some(why) => *others.entry(format!("{}: {why}", record.problem)).or_default() += 1,
-                None if shop(record) => here += 1,
                 None => wrong.push(format!("{name}: held by nobody")),
             },
         }

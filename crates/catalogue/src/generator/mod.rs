@@ -39,6 +39,17 @@ pub enum Class {
 }
 
 impl Class {
+    /// About the middle of the costs that are drawn of it: what is taken off where either sign is
+    /// wanted.
+    fn middle(self) -> i64 {
+        match self {
+            Self::Uniform => 50,
+            Self::Clustered => 300,
+            Self::Euclidean | Self::NearlySymmetric => 450,
+            Self::ZeroOne => 1,
+        }
+    }
+
     /// All classes.
     pub const ALL: [Self; 5] =
         [Self::Uniform, Self::Euclidean, Self::Clustered, Self::ZeroOne, Self::NearlySymmetric];

@@ -27,12 +27,7 @@ pub(super) fn network(size: u32, class: Class, seed: u64) -> String {
 /// Lengths of either sign, so that circles of gain are about; from each node there is an arc to
 /// the next, so that the end can be reached.
 pub(super) fn with_gains(size: u32, class: Class, seed: u64) -> Blocks {
-    let middle = match class {
-        Class::Uniform => 50,
-        Class::Clustered => 300,
-        Class::Euclidean | Class::NearlySymmetric => 450,
-        Class::ZeroOne => 1,
-    };
+    let middle = class.middle();
     let mut draw = Draw::new(seed);
     let points = draw.points(size, class);
     let (nodes, others) = (names('n', points.len()), i64::from(size));

@@ -21,12 +21,7 @@ pub(super) fn plants(size: u32, class: Class, seed: u64) -> Blocks {
 
 /// Worth of either sign, about as often below 0 as above.
 pub(super) fn decisions(size: u32, class: Class, seed: u64) -> Blocks {
-    let middle = match class {
-        Class::Uniform => 50,
-        Class::Clustered => 300,
-        Class::Euclidean | Class::NearlySymmetric => 450,
-        Class::ZeroOne => 1,
-    };
+    let middle = class.middle();
     let mut draw = Draw::new(seed);
     let points = draw.points(size, class);
     let mut blocks = Blocks::new();

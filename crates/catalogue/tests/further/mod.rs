@@ -3,45 +3,10 @@
 //! families of before.
 
 use instance::{Datum, Instance};
-use model::nearest_f64;
 
-/// Columns, rows and families over subsets.
-type Size = (usize, usize, usize);
+use super::holdings::{Data, Size};
 
-struct Data<'i>(&'i Instance);
-
-#[allow(
-    clippy::cast_possible_truncation,
-    clippy::cast_sign_loss,
-    reason = "generated numbers are small, whole and 0 or more"
-)]
 impl Data<'_> {
-    fn count(&self, name: &str) -> usize {
-        match self.0.get(name) {
-            Some(Datum::Labels(labels)) => labels.len(),
-            Some(Datum::Integers(values)) => values.len(),
-            Some(Datum::Tuples { rows, .. }) => rows.len(),
-            Some(Datum::Table { cells, .. }) => cells.len(),
-            _ => 0,
-        }
-    }
-
-    fn number(&self, name: &str) -> usize {
-        match self.0.get(name) {
-            Some(Datum::Number(value)) => nearest_f64(value) as usize,
-            _ => 0,
-        }
-    }
-
-    fn cells(&self, name: &str) -> Vec<usize> {
-        match self.0.get(name) {
-            Some(Datum::Table { cells, .. }) => {
-                cells.values().map(|value| nearest_f64(value) as usize).collect()
-            }
-            _ => Vec::new(),
-        }
-    }
-
     /// 1 where an arc has the element of that name at that end, else 0.
     fn meets(&self, name: &str, end: usize) -> usize {
         let (Some(Datum::Element(node)), Some(Datum::Table { cells, .. })) =
@@ -50,10 +15,6 @@ impl Data<'_> {
             return 0;
         };
         usize::from(cells.keys().any(|arc| arc[end] == *node))
-    }
-
-    fn total(&self, name: &str) -> usize {
-        self.cells(name).iter().sum()
     }
 }
 

@@ -4,11 +4,7 @@
 use instance::{Datum, Instance};
 use model::nearest_f64;
 
-/// Columns, rows and families over subsets.
-type Size = (usize, usize, usize);
-
-/// What an instance holds, in counts.
-struct Data<'i>(&'i Instance);
+use super::holdings::{Data, Size};
 
 #[allow(
     clippy::cast_possible_truncation,
@@ -16,37 +12,6 @@ struct Data<'i>(&'i Instance);
     reason = "generated numbers are small, whole and 0 or more"
 )]
 impl Data<'_> {
-    /// Members of a set.
-    fn count(&self, name: &str) -> usize {
-        match self.0.get(name) {
-            Some(Datum::Labels(labels)) => labels.len(),
-            Some(Datum::Integers(values)) => values.len(),
-            Some(Datum::Tuples { rows, .. }) => rows.len(),
-            _ => 0,
-        }
-    }
-
-    fn number(&self, name: &str) -> usize {
-        match self.0.get(name) {
-            Some(Datum::Number(value)) => nearest_f64(value) as usize,
-            _ => 0,
-        }
-    }
-
-    /// The numbers of a table.
-    fn cells(&self, name: &str) -> Vec<usize> {
-        match self.0.get(name) {
-            Some(Datum::Table { cells, .. }) => {
-                cells.values().map(|value| nearest_f64(value) as usize).collect()
-            }
-            _ => Vec::new(),
-        }
-    }
-
-    fn total(&self, name: &str) -> usize {
-        self.cells(name).iter().sum()
-    }
-
     /// For each piece the sizes from its own on. Sizes are numbered in the order of the listing.
     fn pieces_and_later_sizes(&self) -> usize {
         let Some(Datum::Table { cells, .. }) = self.0.get("b") else { return 0 };

@@ -1,6 +1,6 @@
 //! Measures, the estimate and the diagnosis of a search, with their words.
 
-use model::Model;
+use model::{LabelId, Model};
 use record::results::{
     DiagnosisKind, DiagnosisReport, EstimateReport, IncumbentReport, LeavesReport, MeasuresReport,
 };
@@ -68,6 +68,7 @@ fn words(model: &Model, diagnosis: &Diagnosis) -> (DiagnosisKind, String) {
             (DiagnosisKind::WeakRoot, words)
         }
         Diagnosis::IncumbentLate { after, nodes } => {
+            let (after, nodes) = (count(*after), count(*nodes));
             let words = format!(
                 "The best plan came after {after} of {nodes} nodes: until then little could be \
                  closed by its value. Give a best known value or a plan, or switch heuristics on"
@@ -75,6 +76,8 @@ fn words(model: &Model, diagnosis: &Diagnosis) -> (DiagnosisKind, String) {
             (DiagnosisKind::IncumbentLate, words)
         }
         Diagnosis::Plateau { stretch, nodes, idle, branchings } => {
+            let (stretch, nodes) = (count(*stretch), count(*nodes));
+            let (idle, branchings) = (count(*idle), count(*branchings));
             let words = format!(
                 "The bound stood still for {stretch} of {nodes} nodes, and {idle} of {branchings} \
                  branchings raised it on neither side"
@@ -82,6 +85,7 @@ fn words(model: &Model, diagnosis: &Diagnosis) -> (DiagnosisKind, String) {
             (DiagnosisKind::Plateau, words)
         }
         Diagnosis::Unbalanced { down, up, nodes } => {
+            let nodes = count(*nodes);
             let (down, up) = (figure(*down), figure(*up));
             let words = format!(
                 "Branching is one-sided: “at most” raises the bound by {down} and “at least” by \
@@ -90,18 +94,11 @@ fn words(model: &Model, diagnosis: &Diagnosis) -> (DiagnosisKind, String) {
             (DiagnosisKind::UnbalancedBranching, words)
         }
         Diagnosis::Copies { labels, idle, branchings } => {
-            let names: Vec<&str> =
-                labels.iter().take(NAMED).map(|&label| model.labels().name(label)).collect();
-            let (names, all) = (names.join(", "), labels.len());
-            let more = if all > NAMED { "…" } else { "" };
-            let words = format!(
-                "The model does not tell {all} labels apart ({names}{more}), so that each plan has \
-                 copies; {idle} of {branchings} branchings raised the bound on neither side. Order \
-                 them by a row"
-            );
+            let words = copies(model, labels, [count(*idle), count(*branchings)]);
             (DiagnosisKind::SymmetricCopies, words)
         }
         Diagnosis::Infeasible { empty, leaves } => {
+            let (empty, leaves) = (count(*empty), count(*leaves));
             let words = format!(
                 "{empty} of {leaves} leaves have no point: the rows leave little room, and what \
                  rules a branch out shows only deep in the tree. Propagation may close it sooner"
@@ -109,6 +106,7 @@ fn words(model: &Model, diagnosis: &Diagnosis) -> (DiagnosisKind, String) {
             (DiagnosisKind::ManyInfeasibleLeaves, words)
         }
         Diagnosis::Numerics { unproved, unsolved, leaves } => {
+            let (unproved, unsolved, leaves) = (count(*unproved), count(*unsolved), count(*leaves));
             let words = format!(
                 "{unproved} of {leaves} leaves could not be proved and {unsolved} nodes not be \
                  solved: look at the range of the coefficients"
@@ -116,6 +114,30 @@ fn words(model: &Model, diagnosis: &Diagnosis) -> (DiagnosisKind, String) {
             (DiagnosisKind::Numerics, words)
         }
     }
+}
+
+fn copies(model: &Model, labels: &[LabelId], [idle, branchings]: [String; 2]) -> String {
+    let names: Vec<&str> =
+        labels.iter().take(NAMED).map(|&label| model.labels().name(label)).collect();
+    let (names, all) = (names.join(", "), labels.len());
+    let more = if all > NAMED { "…" } else { "" };
+    format!(
+        "The model does not tell {all} labels apart ({names}{more}), so that each plan has copies; \
+         {idle} of {branchings} branchings raised the bound on neither side. Order them by a row"
+    )
+}
+
+/// A count with its thousands apart.
+fn count(value: impl Into<u64>) -> String {
+    let digits = value.into().to_string();
+    let mut text = String::new();
+    for (place, digit) in digits.chars().enumerate() {
+        if place > 0 && (digits.len() - place) % 3 == 0 {
+            text.push(',');
+        }
+        text.push(digit);
+    }
+    text
 }
 
 /// Four significant digits.
@@ -133,7 +155,13 @@ fn percent(share: f64) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::figure;
+    use super::{count, figure};
+
+    #[test]
+    fn thousands_stand_apart() {
+        let all = [0_u32, 999, 1_000, 1_410_862].map(count);
+        assert_eq!(all, ["0", "999", "1,000", "1,410,862"]);
+    }
 
     #[test]
     fn figures_have_four_digits() {

@@ -23,7 +23,10 @@ impl Lexer<'_> {
     /// Passes over the sentence that begins on this line, if one does.
     pub(super) fn sentence(&mut self) -> bool {
         let (text, start) = (self.text, self.at);
-        let begins = self.gap.has(Gap::NEWLINE) && self.environment == 0 && self.depth == 0;
+        // What ends a line in TeX ends it as a new line does: printed, the two are the same.
+        let anew = self.gap.has(Gap::NEWLINE)
+            || self.tokens.last().is_some_and(|token| token.kind == Kind::Break);
+        let begins = anew && self.environment == 0 && self.depth == 0;
         if !begins || !is_sentence(line_of(&text[start..])) {
             return false;
         }

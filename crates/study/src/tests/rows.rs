@@ -1,11 +1,13 @@
 //! Rows of one rival over every plan of the other, and levels that follow.
 
+use std::collections::BTreeMap;
 use std::rc::Rc;
 
-use model::{ColumnId, Number, Row, RowId};
+use model::{ColumnId, FamilyState, Number, Row, RowId};
 use record::study::{EquivalenceLevel, OrderLevel, Relation};
 
 use super::{LINKED, driven, instance, shipped, stops, subject};
+use crate::subject::model_of;
 use crate::{Plan, Subject, court};
 
 /// Two sites, three clients.
@@ -74,4 +76,24 @@ fn every_subtour_row_is_certified_over_flows_where_they_are_few() {
     assert_eq!((order.level, order.relation), (OrderLevel::Certified, Relation::NeverWeaker));
     assert!(forth.proofs.iter().any(|proof| proof.row.starts_with("subtour{")));
     assert!(order.certificates[1].why.contains("variables of its own"), "{order:?}");
+}
+
+/// Rows on demand of the outer rival were passed over: what was certified was a part of it.
+#[test]
+fn rows_on_demand_are_rows_that_must_hold_too() {
+    let data = instance(SITES);
+    let added = LINKED.replace(
+        "  x_{i,j} ≤ y_i               ∀ i ∈ I, j ∈ J    (link)",
+        "  Σ_{j ∈ J} x_{i,j} ≤ |J| y_i  ∀ i ∈ I           (link)",
+    );
+    let states = BTreeMap::from([("link".to_owned(), FamilyState::OnDemand)]);
+    let model = model_of(LINKED, &data, &BTreeMap::new(), &states).expect("a model");
+    let split = Subject { model: Rc::new(model), ..subject("B", LINKED, &data) };
+    let subjects = vec![subject("A", &added, &data), split];
+    let order =
+        driven(50_000, |desk| crate::order::order(desk, subjects, Plan::default())).remove(0);
+    let [forth, back] = &order.certificates;
+    assert_eq!(forth.holds, Some(false), "{}", forth.why);
+    assert!(forth.witness.starts_with("link["), "{}", forth.witness);
+    assert_eq!(back.holds, Some(true), "{}", back.why);
 }

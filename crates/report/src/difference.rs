@@ -25,6 +25,15 @@ pub struct LineOf {
     pub text: String,
 }
 
+/// Lines that only one of two rivals has.
+#[derive(Debug, Clone, Default, PartialEq, Eq)]
+pub struct Lines {
+    /// The first of them, in order.
+    pub told: Vec<LineOf>,
+    /// What was left out, as a sentence; empty when nothing was.
+    pub left_out: String,
+}
+
 /// What differs, one sentence each; one that says so where nothing does. `A` and `B` are what the
 /// rivals are called.
 #[must_use]
@@ -163,12 +172,15 @@ fn listed(all: &[String]) -> Option<String> {
 /// Lines of two notations that only one of them has, in order, by a longest common subsequence; at
 /// most some, of texts that are not very long. O(lines²).
 #[must_use]
-pub fn lines(one: &str, other: &str) -> Vec<LineOf> {
+pub fn lines(one: &str, other: &str) -> Lines {
     let split = |text: &'_ str| -> Vec<String> {
         let lines = text.lines().map(|line| line.split_whitespace().collect::<Vec<_>>().join(" "));
-        lines.filter(|line| !line.is_empty()).take(LINES).collect()
+        lines.filter(|line| !line.is_empty()).collect()
     };
-    let (one, other) = (split(one), split(other));
+    let (mut one, mut other) = (split(one), split(other));
+    let long = one.len() > LINES || other.len() > LINES;
+    one.truncate(LINES);
+    other.truncate(LINES);
     let common = table(&one, &other);
     let (mut i, mut j, mut told) = (0, 0, Vec::new());
     while i < one.len() || j < other.len() {
@@ -182,8 +194,15 @@ pub fn lines(one: &str, other: &str) -> Vec<LineOf> {
             j += 1;
         }
     }
-    told.truncate(TOLD);
-    told
+    let mut left_out = String::new();
+    if told.len() > TOLD {
+        left_out = format!("And {} more.", count((told.len() - TOLD) as u64));
+        told.truncate(TOLD);
+    }
+    if long {
+        left_out += &format!(" Only the first {LINES} lines of each were compared.");
+    }
+    Lines { told, left_out: left_out.trim_start().to_owned() }
 }
 
 /// The length of the longest common subsequence from each pair of places on.
@@ -260,10 +279,19 @@ mod tests {
 
     #[test]
     fn lines_that_moved_or_changed_are_told() {
-        let told = lines("a\nb\nc\n", "a\n  b2\nc\n\nd");
+        let Lines { told, left_out } = lines("a\nb\nc\n", "a\n  b2\nc\n\nd");
         let words: Vec<(bool, &str)> =
             told.iter().map(|line| (line.first, line.text.as_str())).collect();
         assert_eq!(words, [(true, "b"), (false, "b2"), (false, "d")]);
-        assert!(lines("x  +  y", "x + y").is_empty());
+        assert_eq!((lines("x  +  y", "x + y"), left_out.as_str()), (Lines::default(), ""));
+    }
+
+    #[test]
+    fn what_is_cut_is_said() {
+        let many =
+            |from: u32, to: u32| -> String { (from..to).map(|line| format!("{line}\n")).collect() };
+        assert_eq!(lines(&many(0, 30), "").left_out, "And 6 more.");
+        let long = lines(&many(0, 500), &many(0, 450));
+        assert_eq!(long.left_out, "Only the first 400 lines of each were compared.");
     }
 }

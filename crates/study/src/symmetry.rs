@@ -182,7 +182,7 @@ fn generator(model: &Model, image: &[usize]) -> Generator {
             let told = moved.iter().take(MOST_MOVES);
             let told: Vec<String> =
                 told.map(|&(from, to)| format!("{} becomes {}", name(from), name(to))).collect();
-            told.join(", ")
+            told.join(", ") + if moved.len() > MOST_MOVES { ", …" } else { "" }
         })
     };
     Generator { moves: count(moved.len()), words }
@@ -200,12 +200,15 @@ fn labels_moved(model: &Model, moved: &[(usize, usize)]) -> Option<String> {
         }
     }
     let name = |label: &LabelId| model.labels().name(*label);
-    let told: Vec<String> = to
+    let mut told: Vec<String> = to
         .iter()
         .filter(|(label, becomes)| label != becomes)
-        .take(2 * MOST_MOVES)
         .map(|(label, becomes)| format!("{} becomes {}", name(label), name(becomes)))
         .collect();
+    if told.len() > 2 * MOST_MOVES {
+        told.truncate(2 * MOST_MOVES);
+        told.push("…".to_owned());
+    }
     (!told.is_empty()).then(|| told.join(", "))
 }
 

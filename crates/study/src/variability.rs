@@ -31,6 +31,9 @@ pub async fn variability(desk: Rc<Desk>, subjects: Vec<Subject>, plan: Plan) -> 
     let mut out = Variability { nodes: plan.nodes, orders: plan.orders, ..Variability::default() };
     if let Some((name, used)) = subjects.iter().find_map(root) {
         (out.root, out.root_used) = (name, used);
+        let stops = subjects.iter().filter_map(|subject| subject.source.as_ref());
+        let stops = stops.map(|source| source.instance.stops().len()).max();
+        out.elements = stops.and_then(|stops| u32::try_from(stops).ok()).unwrap_or(u32::MAX);
     }
     for subject in &subjects {
         let mut rival = RivalVariability {
@@ -143,13 +146,14 @@ fn root(subject: &Subject) -> Option<(String, String)> {
     (free && instance.stops().contains(used)).then(|| (name.to_owned(), used.clone()))
 }
 
-/// The bound of the relaxation with each element as the root.
+/// The bound of the relaxation with each element as the root, the one that is used first.
 async fn roots(desk: &Desk, subject: &Subject) -> Vec<(String, Option<f64>)> {
-    let (Some((name, _)), Some(source)) = (root(subject), &subject.source) else {
+    let (Some((name, used)), Some(source)) = (root(subject), &subject.source) else {
         return Vec::new();
     };
     let mut out = Vec::new();
-    for element in source.instance.stops().iter().take(MOST_ROOTS) {
+    let others = source.instance.stops().iter().filter(|stop| **stop != used);
+    for element in std::iter::once(&used).chain(others.take(MOST_ROOTS - 1)) {
         desk.say(format!("{}: with {element} as the root", subject.letter));
         let Some(model) = with_root(source, &name, element) else { continue };
         out.push((element.clone(), desk.relax(&Rc::new(model)).await.bound));

@@ -1,7 +1,7 @@
 //! What differs between two rivals as they are written: sizes, variables, families, coefficients, and
 //! the lines of their notation.
 
-use report::difference::{LineOf, lines, sentences};
+use report::difference::{LineOf, Lines, lines, sentences};
 use web_sys::HtmlSelectElement;
 use yew::prelude::*;
 
@@ -68,18 +68,18 @@ fn told(document: &Document, board: &Board, (one, other): (usize, usize)) -> Htm
     let script = |slot: &Slot| Draft::of(&slot.rival, &document.catalogue).map(|draft| draft.text);
     let apart = match slots.map(script) {
         [Some(mine), Some(theirs)] => lines(&mine, &theirs),
-        _ => Vec::new(),
+        _ => Lines::default(),
     };
     html! {
         <>
             <ul class="prose" data-testid="difference-words">
                 for sentence in said { <li>{ sentence }</li> }
             </ul>
-            if !apart.is_empty() {
+            if !apart.told.is_empty() {
                 <table class="lines" data-testid="difference-lines">
                     <caption>{ "Lines of notation that only one of them has" }</caption>
                     <tbody>
-                        for LineOf { first, text } in apart {
+                        for LineOf { first, text } in apart.told {
                             <tr>
                                 <th scope="row">{ names[usize::from(!first)].clone() }</th>
                                 <td><code>{ text }</code></td>
@@ -88,6 +88,7 @@ fn told(document: &Document, board: &Board, (one, other): (usize, usize)) -> Htm
                     </tbody>
                 </table>
             }
+            if !apart.left_out.is_empty() { <p class="soft">{ apart.left_out }</p> }
         </>
     }
 }

@@ -18,6 +18,9 @@ pub struct Variability {
     pub root: String,
     /// The element that is the root as the instance has it.
     pub root_used: String,
+    /// Elements that could be the root; where there are many, only some were tried.
+    #[serde(default)]
+    pub elements: u32,
 }
 
 /// One rival.

@@ -102,8 +102,21 @@ fn roots(report: &Variability) -> Section {
         ),
         verdict: report.rivals.iter().filter_map(|rival| turn(rival, &report.root_used)).collect(),
         table: Some(table),
-        notes: Vec::new(),
+        notes: untried(report).into_iter().collect(),
     }
+}
+
+/// That not every element was tried, where there are many.
+fn untried(report: &Variability) -> Option<String> {
+    let tried = report.rivals.iter().map(|rival| rival.roots.len()).max()? as u64;
+    let all = u64::from(report.elements);
+    (tried < all).then(|| {
+        format!(
+            "Tried were {} of {}; of the others nothing is said.",
+            count(tried),
+            of(all, "stop")
+        )
+    })
 }
 
 fn turn(rival: &RivalVariability, used: &str) -> Option<String> {
@@ -124,4 +137,26 @@ fn turn(rival: &RivalVariability, used: &str) -> Option<String> {
         short(high.1),
         high.0
     ))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// With more stops than are tried, the bound was called the same whichever stop is the root.
+    #[test]
+    fn roots_that_were_not_tried_are_said() {
+        let bounds = [("Ash".to_owned(), Some(4.0)), ("Birch".to_owned(), Some(4.0))];
+        let rival = RivalVariability { roots: bounds.to_vec(), ..RivalVariability::default() };
+        let report = |elements| Variability {
+            rivals: vec![rival.clone()],
+            root: "r".to_owned(),
+            root_used: "Ash".to_owned(),
+            elements,
+            ..Variability::default()
+        };
+        let notes = |elements| roots(&report(elements)).notes;
+        assert_eq!(notes(80), ["Tried were 2 of 80 stops; of the others nothing is said."]);
+        assert!(notes(2).is_empty());
+    }
 }

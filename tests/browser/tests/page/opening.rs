@@ -106,8 +106,10 @@ const TRUST: &str = "
 #[tokio::test(flavor = "multi_thread")]
 async fn no_text_becomes_markup_or_a_script() -> Outcome<()> {
     visit_loudly(Source::File, async |browser| {
-        let knows = browser.script("return 'trustedTypes' in globalThis").await?;
-        if knows == true {
+        // Firefox's driver runs a test's scripts apart from the page, beyond its policy.
+        let bound =
+            "return 'trustedTypes' in globalThis && !navigator.userAgent.includes('Firefox')";
+        if browser.script(bound).await? == true {
             assert_eq!(browser.script(TRUST).await?, json!([true, true, true, true]));
         }
         Ok(())

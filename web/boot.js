@@ -1,48 +1,109 @@
 "use strict";
-// Opens the page out of its own file: page module, engine module, the second LP code's module and
-// the workers' scripts stand in it packed into one. Each is compiled once here; the page posts the
-// compiled modules to its workers.
-(async () => {
+// Opens the page out of its own file. Three packs stand in it: what draws the page with the
+// workers' scripts, the engine, the second LP code. The first is unpacked and started while the
+// file still arrives; the others are unpacked by a worker, so that the page answers meanwhile, and
+// the second LP code once somebody asks for it. Each module is compiled once and posted to its
+// workers.
+(() => {
   const notice = document.getElementById("boot");
+  const arrived = new Promise((resolve) => {
+    document.addEventListener("DOMContentLoaded", resolve, { once: true });
+  });
+  // Where the browser knows trusted types, scripts made here alone may become workers.
+  const trust = globalThis.trustedTypes?.createPolicy("hullward", {
+    createScriptURL: (address) => address,
+  });
 
-  function unpack() {
-    const element = document.getElementById("pack");
-    const packed = atob(element.textContent);
-    element.remove();
-    const bytes = new Uint8Array(packed.length);
-    for (let i = 0; i < packed.length; i += 1) bytes[i] = packed.charCodeAt(i);
-    const numbers = (text) => text.split(",").map(Number);
-    const { lengths, streams } = element.dataset;
-    return joinStreams(unpackLzma(bytes), numbers(streams), numbers(lengths));
+  function address(script) {
+    const blob = URL.createObjectURL(new Blob([script], { type: "text/javascript" }));
+    return trust ? trust.createScriptURL(blob) : blob;
   }
 
-  try {
-    const [pageBytes, engineBytes, engineScript, opinionBytes, opinionScript] = unpack();
-    const [page, engine, opinion] = await Promise.all(
-      [pageBytes, engineBytes, opinionBytes].map((bytes) => WebAssembly.compile(bytes)),
+  const ORDER = ["page", "engine", "opinion"];
+  const taken = {};
+
+  // A pack out of the file: its bytes, and how to take them apart.
+  function packed(name) {
+    const element = document.getElementById(`pack-${name}`);
+    const text = atob(element.textContent);
+    element.remove();
+    const bytes = new Uint8Array(text.length);
+    for (let i = 0; i < text.length; i += 1) bytes[i] = text.charCodeAt(i);
+    const numbers = (list) => list.split(",").map(Number);
+    const { streams, lengths } = element.dataset;
+    return { bytes, streams: numbers(streams), lengths: numbers(lengths) };
+  }
+
+  // A pack and those before it, from which it is unpacked.
+  function packsTo(name) {
+    const needed = ORDER.slice(0, ORDER.indexOf(name) + 1);
+    return needed.map((of) => (taken[of] ??= packed(of)));
+  }
+
+  const ASIDE = `"use strict";
+    ${unpackLzma}
+    ${joinStreams}
+    ${unpack}
+    globalThis.onmessage = async ({ data }) => {
+      try {
+        const [module] = unpack(data);
+        postMessage(await WebAssembly.compile(module));
+      } catch (error) {
+        postMessage(String(error));
+      }
+    };`;
+
+  function compiledAside(name) {
+    return new Promise((resolve, reject) => {
+      const worker = new Worker(address(ASIDE));
+      worker.onerror = (event) => reject(new Error(event.message));
+      worker.onmessage = ({ data }) => {
+        worker.terminate();
+        if (data instanceof WebAssembly.Module) resolve(data);
+        else reject(new Error(data));
+      };
+      worker.postMessage(packsTo(name));
+    });
+  }
+
+  const modules = {};
+  function module(name) {
+    modules[name] ??= arrived.then(() => compiledAside(name));
+    return modules[name];
+  }
+
+  // A worker at once; its module follows when it is there. Requests wait in the worker.
+  function startWorker(name) {
+    const worker = new Worker(globalThis.hullward.scripts[name]);
+    module(name).then(
+      (compiled) => worker.postMessage(compiled),
+      (error) => worker.dispatchEvent(new ErrorEvent("error", { message: error.message })),
     );
-    // Where the browser knows trusted types, these two scripts alone may become workers.
-    const trust = globalThis.trustedTypes?.createPolicy("hullward", {
-      createScriptURL: (address) => address,
-    });
-    const address = (script) => {
-      const blob = URL.createObjectURL(new Blob([script], { type: "text/javascript" }));
-      return trust ? trust.createScriptURL(blob) : blob;
-    };
-    globalThis.hullward = Object.freeze({
-      engineModule: engine,
-      workerUrl: address(engineScript),
-      opinionModule: opinion,
-      opinionUrl: address(opinionScript),
-    });
-    await wasm_bindgen({ module_or_path: page });
-    notice.remove();
-    document.documentElement.dataset.boot = "done";
-  } catch (error) {
+    return worker;
+  }
+
+  function fail(error) {
     notice.setAttribute("role", "alert");
     notice.textContent =
       "Hullward needs WebAssembly and could not start. A current browser with WebAssembly " +
       `allowed opens it. What the browser said: ${error}`;
+    document.body.append(notice);
     document.documentElement.dataset.boot = "failed";
   }
+
+  async function open() {
+    const [page, engineScript, opinionScript] = unpack(packsTo("page"));
+    const scripts = Object.freeze({ engine: address(engineScript), opinion: address(opinionScript) });
+    globalThis.hullward = Object.freeze({ scripts, startWorker });
+    await wasm_bindgen({ module_or_path: page });
+    performance.mark("page open");
+    document.documentElement.dataset.boot = "done";
+    notice.textContent = "The engine is still arriving; what you enter waits for it.";
+    await module("engine");
+    notice.remove();
+    performance.mark("engine there");
+    document.documentElement.dataset.engine = "done";
+  }
+
+  open().catch(fail);
 })();

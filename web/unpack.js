@@ -1,17 +1,32 @@
 "use strict";
 // What the page carries, unpacked in two steps: LZMA, then the streams of crates/xtask/src/streams.rs.
 
+// The parts of the last of some packs that follow one another in one stream.
+function unpack(packs) {
+  const sizes = packs.map(({ streams }) => streams.reduce((sum, size) => sum + size, 0));
+  const size = sizes.reduce((sum, size) => sum + size, 0);
+  const stream = new Uint8Array(packs.reduce((sum, { bytes }) => sum + bytes.length, 0));
+  let at = 0;
+  for (const { bytes } of packs) {
+    stream.set(bytes, at);
+    at += bytes.length;
+  }
+  const { streams, lengths } = packs.at(-1);
+  return joinStreams(unpackLzma(stream, size).subarray(size - sizes.at(-1)), streams, lengths);
+}
+
 // LZMA, decoded: what the page carries is a third smaller than under gzip, which browsers could
 // decode by themselves. Source: I. Pavlov, "LZMA specification" (2015), public domain; the names
-// are its names. Takes a stream with the 13 bytes of the .lzma header and a known size.
-function unpackLzma(packed) {
+// are its names. Takes a stream with the 13 bytes of the .lzma header and a known size, or its
+// begin, and gives the first `size` bytes.
+function unpackLzma(packed, size) {
   const properties = packed[0];
   const lc = properties % 9;
   const lp = Math.floor(properties / 9) % 5;
   const pb = Math.floor(properties / 45);
   const header = new DataView(packed.buffer, packed.byteOffset, 13);
-  const size = header.getUint32(5, true);
-  if (pb > 4 || header.getUint32(9, true) !== 0) throw new Error("this is no .lzma of known size");
+  const known = header.getUint32(5, true) >= size && header.getUint32(9, true) === 0;
+  if (pb > 4 || !known) throw new Error("this is no .lzma of known size");
 
   const even = (count) => new Uint16Array(count).fill(1024);
   const literals = even(0x300 << (lc + lp));
@@ -137,8 +152,8 @@ function unpackLzma(packed) {
   }
 
   function copy(count) {
-    if (rep0 >= at || at + count > size) throw new Error("the .lzma stream is damaged");
-    for (const end = at + count; at < end; at += 1) out[at] = out[at - rep0 - 1];
+    if (rep0 >= at) throw new Error("the .lzma stream is damaged");
+    for (const end = Math.min(at + count, size); at < end; at += 1) out[at] = out[at - rep0 - 1];
   }
 
   let [rep0, rep1, rep2, rep3, state, at] = [0, 0, 0, 0, 0, 0];

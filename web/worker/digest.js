@@ -8,15 +8,20 @@ const { join } = require("node:path");
 const vm = require("node:vm");
 
 const [page, scenario, rivals, slice, runs] = process.argv.slice(2);
-const found = readFileSync(page, "utf8").match(
-  /id="pack" data-lengths="([^"]*)" data-streams="([^"]*)">([^<]*)</,
-);
-if (found === null) throw new Error(`${page} holds no packed modules`);
-const [lengths, streams] = found.slice(1, 3).map((text) => text.split(",").map(Number));
+const file = readFileSync(page, "utf8");
+
+function pack(name) {
+  const found = file.match(
+    new RegExp(`id="pack-${name}" data-lengths="([^"]*)" data-streams="([^"]*)">([^<]*)<`),
+  );
+  if (found === null) throw new Error(`${page} holds no pack ${name}`);
+  const [lengths, streams] = found.slice(1, 3).map((text) => text.split(",").map(Number));
+  return { bytes: new Uint8Array(Buffer.from(found[3], "base64")), lengths, streams };
+}
 
 vm.runInThisContext(readFileSync(join(__dirname, "../unpack.js"), "utf8"));
-const unpacked = unpackLzma(new Uint8Array(Buffer.from(found[3], "base64")));
-const [, engine, script] = joinStreams(unpacked, streams, lengths);
+const [, script] = unpack([pack("page")]);
+const [engine] = unpack([pack("page"), pack("engine")]);
 
 vm.runInThisContext(Buffer.from(script).toString("utf8"));
 globalThis.hullwardModule = new WebAssembly.Module(engine);

@@ -1,10 +1,11 @@
 "use strict";
-// The worker's side of the page: the first message is the compiled engine, every later one a
-// request. Work is cut into slices, and each next slice is a message of its own (setTimeout would
+// The worker's side of the page: one message is the compiled engine, every other one a request;
+// those that come before it wait for it. Work is cut into slices, and each next slice is a message of its own (setTimeout would
 // wait for milliseconds, a promise would not let messages in), so that a request is heard between
 // two slices. A failure is told as a string; the page then replaces the worker.
 (() => {
   const turn = new MessageChannel();
+  const early = [];
   let host = null;
   let planned = false;
   let failed = false;
@@ -39,16 +40,22 @@
       if (busy) plan();
     });
 
+  function receive(data) {
+    if (!(data instanceof Uint8Array)) throw new TypeError("a request is bytes");
+    host.receive(data);
+    plan();
+  }
+
   globalThis.onmessage = ({ data }) =>
     guard(() => {
-      if (host === null) {
+      if (host !== null) {
+        receive(data);
+      } else if (data instanceof WebAssembly.Module) {
         wasm_bindgen.initSync({ module: data });
         host = new wasm_bindgen.Host();
-      } else if (data instanceof Uint8Array) {
-        host.receive(data);
-        plan();
+        early.splice(0).forEach(receive);
       } else {
-        throw new TypeError("a request is bytes");
+        early.push(data);
       }
     });
 })();

@@ -11,18 +11,19 @@ use base64::engine::general_purpose::STANDARD;
 use sha2::{Digest, Sha256};
 
 use crate::fault::Fault;
+use crate::pack::Pack;
 
 /// What goes into the template.
 #[derive(Debug, Clone, Copy)]
 pub(crate) struct Parts<'a> {
     /// The style sheet.
     pub(crate) style: &'a str,
-    /// The lengths of the packed parts: page module, engine module, its script, opinion module, its script.
-    pub(crate) lengths: &'a str,
-    /// The lengths of the streams that the parts were taken apart into.
-    pub(crate) streams: &'a str,
-    /// The packed parts.
-    pub(crate) pack: &'a str,
+    /// The page module and the scripts of both workers.
+    pub(crate) page: &'a Pack,
+    /// The engine module.
+    pub(crate) engine: &'a Pack,
+    /// The second LP code's module.
+    pub(crate) opinion: &'a Pack,
     /// The page module's glue, a script.
     pub(crate) page_glue: &'a str,
     /// The decoder and the boot script.
@@ -42,13 +43,25 @@ pub(crate) fn assemble(template: &str, parts: &Parts<'_>) -> Result<String, Faul
         &[
             ("policy", &policy),
             ("style", parts.style),
-            ("lengths", parts.lengths),
-            ("streams", parts.streams),
-            ("pack", parts.pack),
+            ("page", &element(parts.page)),
+            ("engine", &element(parts.engine)),
+            ("opinion", &element(parts.opinion)),
             ("page-glue", &page_glue),
             ("boot", &boot),
         ],
     )
+}
+
+/// A pack as the rest of an element that has begun: how to take it apart, then the pack itself.
+fn element(pack: &Pack) -> String {
+    let Pack { text, lengths, streams, .. } = pack;
+    format!("data-lengths=\"{lengths}\" data-streams=\"{streams}\">{text}")
+}
+
+/// The page up to the engine: all that must have arrived before it opens.
+pub(crate) fn up_to_the_engine(file: &str) -> &str {
+    file.split_once("<script type=\"application/octet-stream\" id=\"pack-engine\"")
+        .map_or(file, |(first, _)| first)
 }
 
 /// Replaces each `{{name}}` by its value, in one pass, so that a value is never filled itself.
@@ -116,16 +129,25 @@ fn source_hash(text: &str) -> String {
 
 #[cfg(test)]
 mod tests {
+    use std::sync::LazyLock;
+
     use super::*;
 
     const TEMPLATE: &str = include_str!("../../../web/index.html");
 
+    static PACK: LazyLock<Pack> = LazyLock::new(|| Pack {
+        text: "AAAA".to_owned(),
+        lengths: "1,2,3".to_owned(),
+        streams: "6,0".to_owned(),
+        size: 3,
+    });
+
     fn parts<'a>() -> Parts<'a> {
         Parts {
             style: "body { margin: 0 }",
-            lengths: "1,2,3",
-            streams: "6,0",
-            pack: "AAAA",
+            page: &PACK,
+            engine: &PACK,
+            opinion: &PACK,
             page_glue: "let wasm_bindgen = '</script><!-- {{boot}}';",
             boot: "start();",
         }
@@ -165,6 +187,14 @@ mod tests {
     }
 
     #[test]
+    fn what_the_page_opens_with_comes_before_the_engine() {
+        let file = assemble(TEMPLATE, &parts()).expect("the template takes the parts");
+        let first = up_to_the_engine(&file);
+        assert!(first.len() < file.len());
+        assert!(first.contains("id=\"pack-page\"") && first.ends_with("start();</script>\n"));
+    }
+
+    #[test]
     fn nothing_in_the_template_is_fetched() {
         for attribute in [" src=", "url(", "@import", "http://", "https://"] {
             let svg_name = TEMPLATE.replace("http://www.w3.org/2000/svg", "");
@@ -179,7 +209,7 @@ mod tests {
             "a = '\\x3c/SCRIPT>' < b; c = `\\x3c!--\\x3cscript>é<`"
         );
         let file = assemble(TEMPLATE, &parts()).expect("the template takes the parts");
-        assert_eq!(file.matches("</script>").count(), 3);
+        assert_eq!(file.matches("</script>").count(), 5);
         assert!(file.contains("{{boot}}'"), "a value is not filled itself");
     }
 

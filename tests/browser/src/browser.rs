@@ -74,6 +74,23 @@ impl Browser {
         .await
     }
 
+    /// Goes to an address and waits until the page there has opened.
+    ///
+    /// # Errors
+    /// Those of the driver; that the page does not open.
+    pub async fn go(&self, address: &str) -> Outcome<()> {
+        self.client.goto(address).await?;
+        self.booted().await
+    }
+
+    /// Makes the page's processor so many times slower; Chromium alone can.
+    ///
+    /// # Errors
+    /// Those of the driver.
+    pub async fn slow_down(&self, times: u32) -> Outcome<()> {
+        self.protocol("Emulation.setCPUThrottlingRate", json!({ "rate": times })).await.map(drop)
+    }
+
     /// Runs a script and returns what it returns.
     ///
     /// # Errors

@@ -9,11 +9,10 @@ use crate::{Outcome, fault};
 
 const ASK: &str = "
     const [requests, done] = [arguments[0], arguments[arguments.length - 1]];
-    const worker = new Worker(hullward.workerUrl);
+    const worker = hullward.startWorker('engine');
     const end = (answer) => { worker.terminate(); done(answer); };
     worker.onerror = (event) => end(`error: ${event.message}`);
     worker.onmessage = ({ data }) => end(typeof data === 'string' ? data : Array.from(data));
-    worker.postMessage(hullward.engineModule);
     for (const bytes of requests) worker.postMessage(new Uint8Array(bytes));
 ";
 

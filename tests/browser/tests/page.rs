@@ -6,6 +6,9 @@ mod lanes;
 #[path = "page/opening.rs"]
 mod opening;
 
+#[path = "page/arriving.rs"]
+mod arriving;
+
 #[path = "page/pasting.rs"]
 mod pasting;
 

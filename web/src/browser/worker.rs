@@ -1,10 +1,11 @@
 //! A worker: started with its compiled module, ended when dropped.
 //!
-//! The boot script leaves the compiled modules and the workers' scripts in `globalThis.hullward`.
-//! The module is posted first, then requests; replies come back as bytes, a failure as text.
+//! The boot script starts it, by `hullward.startWorker`, and posts the compiled module once that is
+//! there; requests that come before it wait in the worker. Replies come back as bytes, a failure as
+//! text.
 
 use gloo_events::EventListener;
-use js_sys::{Array, Function, Reflect, Uint8Array, global};
+use js_sys::{Function, Reflect, Uint8Array, global};
 use record::message::{Envelope, Request};
 use record::wire::{read_envelope, write_request};
 use wasm_bindgen::{JsCast, JsValue};
@@ -58,17 +59,7 @@ impl RawWorker {
         program: Program,
         hear: &Callback<Result<Vec<u8>, String>>,
     ) -> Result<Self, String> {
-        let parts = Reflect::get(&global(), &JsValue::from_str("hullward"))
-            .map_err(|error| text(&error))?;
-        let part = |name: &str| {
-            Reflect::get(&parts, &JsValue::from_str(name)).map_err(|error| text(&error))
-        };
-        let (module, script) = match program {
-            Program::Engine => ("engineModule", "workerUrl"),
-            Program::Opinion => ("opinionModule", "opinionUrl"),
-        };
-        let worker = made(&part(script)?)?;
-        worker.post_message(&part(module)?).map_err(|error| text(&error))?;
+        let worker = started(program).map_err(|error| text(&error))?;
         let listeners = listeners(&worker, hear);
         Ok(Self { worker, _listeners: listeners })
     }
@@ -85,14 +76,15 @@ impl Drop for RawWorker {
     }
 }
 
-/// A worker of an address as it stands, a trusted one where the browser knows of trust: as a mere
-/// text it would be refused.
-fn made(address: &JsValue) -> Result<Worker, String> {
-    let class =
-        Reflect::get(&global(), &JsValue::from_str("Worker")).map_err(|error| text(&error))?;
-    let class = class.dyn_ref::<Function>().ok_or("the browser has no workers")?;
-    let worker = Reflect::construct(class, &Array::of1(address)).map_err(|error| text(&error))?;
-    Ok(worker.unchecked_into())
+/// Has the boot script start a worker.
+fn started(program: Program) -> Result<Worker, JsValue> {
+    let boot = Reflect::get(&global(), &JsValue::from_str("hullward"))?;
+    let start: Function = Reflect::get(&boot, &JsValue::from_str("startWorker"))?.dyn_into()?;
+    let name = match program {
+        Program::Engine => "engine",
+        Program::Opinion => "opinion",
+    };
+    Ok(start.call1(&boot, &JsValue::from_str(name))?.unchecked_into())
 }
 
 fn listeners(worker: &Worker, hear: &Callback<Result<Vec<u8>, String>>) -> [EventListener; 3] {

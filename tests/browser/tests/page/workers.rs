@@ -13,7 +13,7 @@ const KEEP_WORKERS: &str = "
     globalThis.workersOfTest = [];
     const Plain = globalThis.Worker;
     globalThis.Worker = class extends Plain {
-      constructor(...given) { super(...given); if (given[0] === hullward.workerUrl) workersOfTest.push(this); }
+      constructor(...given) { super(...given); if (given[0] === hullward.scripts.engine) workersOfTest.push(this); }
     };
 ";
 

@@ -8,7 +8,7 @@
   const notice = document.getElementById("boot");
   const arrived = new Promise((resolve) => {
     document.addEventListener("DOMContentLoaded", resolve, { once: true });
-  });
+  }).then(() => ["engine", "opinion"].forEach(take));
   // Where the browser knows trusted types, scripts made here alone may become workers.
   const trust = globalThis.trustedTypes?.createPolicy("hullward", {
     createScriptURL: (address) => address,
@@ -20,10 +20,10 @@
   }
 
   const ORDER = ["page", "engine", "opinion"];
-  const taken = {};
+  const packs = {};
 
-  // A pack out of the file: its bytes, and how to take them apart.
-  function packed(name) {
+  // Takes a pack out of the file: its bytes, and how to take them apart.
+  function take(name) {
     const element = document.getElementById(`pack-${name}`);
     const text = atob(element.textContent);
     element.remove();
@@ -31,13 +31,7 @@
     for (let i = 0; i < text.length; i += 1) bytes[i] = text.charCodeAt(i);
     const numbers = (list) => list.split(",").map(Number);
     const { streams, lengths } = element.dataset;
-    return { bytes, streams: numbers(streams), lengths: numbers(lengths) };
-  }
-
-  // A pack and those before it, from which it is unpacked.
-  function packsTo(name) {
-    const needed = ORDER.slice(0, ORDER.indexOf(name) + 1);
-    return needed.map((of) => (taken[of] ??= packed(of)));
+    packs[name] = { bytes, streams: numbers(streams), lengths: numbers(lengths) };
   }
 
   const ASIDE = `"use strict";
@@ -62,7 +56,8 @@
         if (data instanceof WebAssembly.Module) resolve(data);
         else reject(new Error(data));
       };
-      worker.postMessage(packsTo(name));
+      // A pack is unpacked with those before it.
+      worker.postMessage(ORDER.slice(0, ORDER.indexOf(name) + 1).map((of) => packs[of]));
     });
   }
 
@@ -92,7 +87,8 @@
   }
 
   async function open() {
-    const [page, engineScript, opinionScript] = unpack(packsTo("page"));
+    take("page");
+    const [page, engineScript, opinionScript] = unpack([packs.page]);
     const scripts = Object.freeze({ engine: address(engineScript), opinion: address(opinionScript) });
     globalThis.hullward = Object.freeze({ scripts, startWorker });
     await wasm_bindgen({ module_or_path: page });

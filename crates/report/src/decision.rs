@@ -43,6 +43,8 @@ enum Block {
     Heading(String),
     Minor(String),
     Text(String),
+    /// Markdown of somebody's hand.
+    Notes(String),
     List(Vec<String>),
     Table(Table),
     /// A drawing, as SVG of our own.
@@ -92,8 +94,10 @@ fn question(evidence: &Evidence<'_>) -> Vec<Block> {
     let title = &evidence.scenario.title;
     let title = if title.is_empty() { "Which formulation?".to_owned() } else { title.clone() };
     let mut out = vec![Block::Title(title)];
-    let notes = evidence.scenario.notes.split("\n\n").map(str::trim);
-    out.extend(notes.filter(|note| !note.is_empty()).map(|note| Block::Text(note.to_owned())));
+    let notes = evidence.scenario.notes.trim();
+    if !notes.is_empty() {
+        out.push(Block::Notes(notes.to_owned()));
+    }
     if !evidence.facts.is_empty() {
         out.push(Block::Heading("The instance".to_owned()));
         out.push(Block::List(evidence.facts.to_vec()));

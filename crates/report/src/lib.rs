@@ -9,6 +9,7 @@
 //! | [`explain`] | why a rival has no plan or no bound, in sentences |
 //! | [`layout`] | places of tree nodes, stable while the tree grows |
 //! | [`map`] | places fitted to a frame, arcs, hulls |
+//! | [`notes`] | notes in Markdown as paragraphs and lists |
 //! | [`opinion`] | our root beside what a second LP code says |
 //! | [`proof`] | what exact arithmetic proved of a bound, in words |
 //! | [`study`] | what studies found, as sections of words and tables |
@@ -28,6 +29,7 @@ pub mod explain;
 pub mod labels;
 pub mod layout;
 pub mod map;
+pub mod notes;
 pub mod number;
 pub mod opinion;
 pub mod proof;

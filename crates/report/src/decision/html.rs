@@ -3,6 +3,7 @@
 use std::fmt::Write;
 
 use super::Block;
+use crate::notes::{Hand, Piece, Run, pieces};
 use crate::study::Table;
 
 /// Paper first: a serif, thin rules, page breaks that keep tables whole.
@@ -12,7 +13,7 @@ body{max-width:46rem;margin:2rem auto;padding:0 1rem;font:16px/24px Charter,'Bit
 h1{font-size:28px;line-height:36px;margin:0 0 16px}\
 h2{font-size:19px;line-height:28px;margin:32px 0 8px;padding-top:8px;border-top:1px solid #8884}\
 h3{font-size:16px;line-height:24px;margin:20px 0 4px}\
-p,ul{margin:4px 0 8px}ul{padding-left:20px}p{white-space:pre-line}\
+p,ul,ol{margin:4px 0 8px}ul,ol{padding-left:20px}p{white-space:pre-line}\
 .scroll{overflow-x:auto}\
 table{border-collapse:collapse;margin:8px 0;font:13px/20px system-ui,sans-serif;font-variant-numeric:tabular-nums}\
 th,td{padding:3px 10px 3px 0;border-bottom:1px solid #8884;text-align:right;font-weight:400;vertical-align:top}\
@@ -47,6 +48,7 @@ fn write_block(block: &Block, out: &mut String) {
         Block::Heading(text) => out.push_str(&tag("h2", text)),
         Block::Minor(text) => out.push_str(&tag("h3", text)),
         Block::Text(text) => out.push_str(&tag("p", text)),
+        Block::Notes(text) => pieces(text).iter().for_each(|piece| write_piece(piece, out)),
         Block::Code(text) => out.push_str(&tag("pre", text)),
         Block::List(items) => {
             let items: String = items.iter().map(|item| tag("li", item)).collect();
@@ -59,6 +61,35 @@ fn write_block(block: &Block, out: &mut String) {
         }
         Block::Table(table) => write_table(table, out),
     }
+}
+
+fn write_piece(piece: &Piece, out: &mut String) {
+    let items = |items: &[Vec<Run>]| -> String {
+        items.iter().map(|item| format!("<li>{}</li>\n", set(item))).collect()
+    };
+    // Writing to a string cannot fail.
+    let _ = match piece {
+        Piece::Heading(runs) => writeln!(out, "<h3>{}</h3>", set(runs)),
+        Piece::Paragraph(runs) => writeln!(out, "<p>{}</p>", set(runs)),
+        Piece::Bullets(list) => writeln!(out, "<ul>\n{}</ul>", items(list)),
+        Piece::Numbers(first, list) => {
+            writeln!(out, "<ol start=\"{first}\">\n{}</ol>", items(list))
+        }
+        Piece::Code(text) => writeln!(out, "<pre>{}</pre>", escaped(text)),
+    };
+}
+
+fn set(runs: &[Run]) -> String {
+    let run = |run: &Run| {
+        let text = escaped(&run.text);
+        match run.hand {
+            Hand::Plain => text,
+            Hand::Emphasis => format!("<em>{text}</em>"),
+            Hand::Strong => format!("<strong>{text}</strong>"),
+            Hand::Code => format!("<code>{text}</code>"),
+        }
+    };
+    runs.iter().map(run).collect()
 }
 
 fn write_table(table: &Table, out: &mut String) {

@@ -13,7 +13,7 @@ pub(super) fn document(blocks: &[Block]) -> String {
             Block::Title(text) => writeln!(out, "# {}\n", line(text)),
             Block::Heading(text) => writeln!(out, "## {}\n", line(text)),
             Block::Minor(text) => writeln!(out, "### {}\n", line(text)),
-            Block::Text(text) => writeln!(out, "{text}\n"),
+            Block::Text(text) | Block::Notes(text) => writeln!(out, "{text}\n"),
             Block::List(items) => {
                 let items: Vec<String> =
                     items.iter().map(|item| format!("- {}", line(item))).collect();

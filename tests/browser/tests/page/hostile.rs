@@ -111,6 +111,7 @@ async fn harmless(browser: &Browser, before: &serde_json::Value) -> Outcome<()> 
     browser.until("C is typeset", SOON, set).await?;
     let failed = async || Ok(!text(browser, "D", "failure").await?.is_empty());
     browser.until("what is wrong with D is told", SOON, failed).await?;
+    browser.still("[data-testid=turn-notes]").await?.click().await?;
     for (name, markup) in
         [("title", MARKUP[0]), ("notes", MARKUP[2]), ("instance-title", MARKUP[1])]
     {

@@ -150,7 +150,7 @@ async fn a_page_left_in_the_middle_of_a_run_opens_as_it_was() -> Outcome<()> {
         paste_long_work(browser).await?;
         button(browser, "A", "run").await?.click().await?;
         status(browser, "A", "searching").await?;
-        browser.script("document.querySelector('[data-testid=notes]').focus()").await?;
+        browser.script("document.querySelector('[data-testid=turn-notes]').focus()").await?;
         title(browser, "In the middle").await?;
         reload(browser).await?;
         has_title(browser, "In the middle").await?;
@@ -170,6 +170,26 @@ async fn first_steps_that_are_dismissed_never_come_back() -> Outcome<()> {
         reload(browser).await?;
         browser.shows("Rivals, by the").await?;
         assert!(gone().await?);
+        Ok(())
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn notes_read_as_they_are_meant_and_can_be_edited() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        let strong = "return document.querySelector('[data-testid=notes-read] strong').textContent";
+        assert_eq!(browser.script(strong).await?, "All data here are invented");
+        browser.still("[data-testid=turn-notes]").await?.click().await?;
+        let field = browser.select("[data-testid=notes]").await?;
+        browser.paste(&field, "Decided: **C**.\n\n- as its root is best\n").await?;
+        browser.still("[data-testid=turn-notes]").await?.click().await?;
+        let read =
+            browser.script("return document.querySelector('[data-testid=notes-read]').innerHTML");
+        assert_eq!(
+            read.await?,
+            "<p>Decided: <strong>C</strong>.</p><ul><li>as its root is best</li></ul>"
+        );
         Ok(())
     })
     .await

@@ -97,6 +97,22 @@ const TEXTS: &str = "
     return [document.body.textContent, ...fields].join('\\n');
 ";
 
+/// Markup in fields stands there as it was given.
+async fn in_fields(browser: &Browser) -> Outcome<()> {
+    browser.still("[data-testid=turn-notes]").await?.click().await?;
+    for (name, markup) in
+        [("title", MARKUP[0]), ("notes", MARKUP[2]), ("instance-title", MARKUP[1])]
+    {
+        let value = browser.select(&format!("[data-testid={name}]")).await?.prop("value").await?;
+        assert!(value.as_deref().is_some_and(|value| value.contains(markup)), "{name}: {value:?}");
+    }
+    for (letter, markup) in [("A", MARKUP[0]), ("B", MARKUP[2])] {
+        let title = browser.select(&part(letter, "rival-title")).await?.prop("value").await?;
+        assert_eq!(title.as_deref(), Some(markup));
+    }
+    Ok(())
+}
+
 /// Waits for the marked scenario's lanes and looks at what became of its texts.
 async fn harmless(browser: &Browser, before: &serde_json::Value) -> Outcome<()> {
     browser.shows("4 stops, 12 drives").await?;
@@ -111,17 +127,7 @@ async fn harmless(browser: &Browser, before: &serde_json::Value) -> Outcome<()> 
     browser.until("C is typeset", SOON, set).await?;
     let failed = async || Ok(!text(browser, "D", "failure").await?.is_empty());
     browser.until("what is wrong with D is told", SOON, failed).await?;
-    browser.still("[data-testid=turn-notes]").await?.click().await?;
-    for (name, markup) in
-        [("title", MARKUP[0]), ("notes", MARKUP[2]), ("instance-title", MARKUP[1])]
-    {
-        let value = browser.select(&format!("[data-testid={name}]")).await?.prop("value").await?;
-        assert!(value.as_deref().is_some_and(|value| value.contains(markup)), "{name}: {value:?}");
-    }
-    for (letter, markup) in [("A", MARKUP[0]), ("B", MARKUP[2])] {
-        let title = browser.select(&part(letter, "rival-title")).await?.prop("value").await?;
-        assert_eq!(title.as_deref(), Some(markup));
-    }
+    in_fields(browser).await?;
     let texts = browser.script(TEXTS).await?;
     for markup in MARKUP {
         assert!(texts.as_str().unwrap_or_default().contains(markup), "{markup} shows as text");

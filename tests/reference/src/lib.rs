@@ -16,6 +16,7 @@ pub mod parts;
 pub mod random_lp;
 pub mod round_trip;
 pub mod seeded;
+pub mod shops;
 pub mod theory;
 
 use std::io::Read;

@@ -8,6 +8,7 @@
 
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::round_trip::{instance, rival, root, solve};
+use hullward_tests_reference::shops::shop;
 use hullward_tests_reference::theory::{labels, stable_sets};
 use hullward_tests_reference::{agree, open_data};
 use instance::{Datum, Instance};
@@ -99,27 +100,6 @@ fn rounds_of_vehicles() {
         assert!(held, "{id} on {name}: {found} for {wanted}");
         assert!(found > 0.97 * wanted, "{id} on {name}: {found} for {wanted}");
     }
-}
-
-/// A job shop of the usual form (jobs, machines, then for each job its machines and times) as
-/// blocks, with a horizon.
-fn shop(text: &str, horizon: usize) -> Instance {
-    let plain = text.lines().filter(|line| !line.starts_with('#'));
-    let numbers: Vec<usize> =
-        plain.flat_map(str::split_whitespace).map(|word| word.parse().unwrap()).collect();
-    let (jobs, machines) = (numbers[0], numbers[1]);
-    let names = |letter: char, count: usize| {
-        (0..count).map(|i| format!("{letter}{i}")).collect::<Vec<_>>().join(" ")
-    };
-    let (mut steps, mut times) = (String::new(), String::new());
-    for (j, job) in numbers[2..].chunks(2 * machines).take(jobs).enumerate() {
-        job.chunks(2).for_each(|op| times.push_str(&format!("j{j} m{} {}\n", op[0], op[1])));
-        for (here, next) in job.chunks(2).zip(job.chunks(2).skip(1)) {
-            steps.push_str(&format!("j{j} m{} m{}\n", here[0], next[0]));
-        }
-    }
-    let sets = format!("J\n{}\n\nM\n{}", names('j', jobs), names('m', machines));
-    instance(&format!("{sets}\n\nN by j, m, l\n{steps}\np by j, m\n{times}\nH = {horizon}\n"))
 }
 
 /// The longest job, in every form by disjunctions; the work of the busiest machine, by ranks.

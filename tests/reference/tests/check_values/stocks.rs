@@ -1,0 +1,144 @@
+//! Cutting stock, assignments to agents, knapsacks with several rows.
+
+use hullward_tests_reference::graphs::names;
+use hullward_tests_reference::open_data;
+use hullward_tests_reference::round_trip::instance;
+use instance::Instance;
+
+use crate::{Record, row, shipped, value_of};
+
+fn list(text: &str, name: &str) -> Vec<u32> {
+    let from = text.find(&format!("{name}=[")).unwrap() + name.len() + 2;
+    let inner = &text[from..from + text[from..].find(']').unwrap()];
+    inner.split(", ").map(|one| one.trim().parse().unwrap()).collect()
+}
+
+/// `W=100 w=[45, 36] b=[97, 610]` with all patterns that leave no room for a piece.
+fn rolls(text: &str) -> Instance {
+    let from = text.find("W=").unwrap() + 2;
+    let width: u32 = text[from..].split(' ').next().unwrap().parse().unwrap();
+    let (widths, wanted) = (list(text, "w"), list(text, "b"));
+    let (mut open, mut full) = (vec![(Vec::<u32>::new(), width)], Vec::new());
+    while let Some((counts, left)) = open.pop() {
+        match widths.get(counts.len()) {
+            Some(&one) => {
+                let longer =
+                    |count: u32| ([counts.as_slice(), &[count]].concat(), left - count * one);
+                // The last width fills what is left.
+                let least = if counts.len() + 1 == widths.len() { left / one } else { 0 };
+                open.extend((least..=left / one).map(longer));
+            }
+            None => full.push(counts),
+        }
+    }
+    let names: Vec<String> = (0..widths.len()).map(|i| format!("i{i}")).collect();
+    let patterns: Vec<String> = (0..full.len()).map(|p| format!("p{p}")).collect();
+    let column = |numbers: &[u32]| -> String {
+        names.iter().zip(numbers).map(|(name, number)| format!("{name} {number}\n")).collect()
+    };
+    let mut cells = String::new();
+    for (pattern, counts) in patterns.iter().zip(&full) {
+        for (name, count) in names.iter().zip(counts).filter(|(_, count)| **count > 0) {
+            cells.push_str(&format!("{name} {pattern} {count}\n"));
+        }
+    }
+    instance(&format!(
+        "I\n{}\n\nw by i\n{}\nb by i\n{}\nQ = {width}\n\nP\n{}\n\na by i, p\n{cells}\n",
+        names.join(" "),
+        column(&widths),
+        column(&wanted),
+        patterns.chunks(200).map(|line| line.join(" ")).collect::<Vec<_>>().join("\n"),
+    ))
+}
+
+pub fn cutting(record: &Record) -> Option<f64> {
+    if !record.is("cutting stock") {
+        return None;
+    }
+    let on = rolls(&record.instance);
+    let id = match record.formulation.split(' ').next().unwrap() {
+        "Kantorovich" => "bins/assignment",
+        "arc-flow" => "bins/arc-flow",
+        _ => "bins/patterns",
+    };
+    Some(value_of(shipped(id), &on, record.bounds()))
+}
+
+/// The numbers of a file from its `n`-th problem of agents or of rows on.
+pub fn numbers(file: &str) -> Option<Vec<f64>> {
+    let text = open_data(file, "the OR-Library")?;
+    Some(text.split_whitespace().map(|word| word.parse().unwrap()).collect())
+}
+
+fn grid(rows: (&str, usize), columns: (&str, usize), cells: &[f64], sign: f64) -> String {
+    let mut out = String::new();
+    for r in 0..rows.1 {
+        for c in 0..columns.1 {
+            let value = sign * cells[r * columns.1 + c];
+            out.push_str(&format!("{}{r} {}{c} {value}\n", rows.0, columns.0));
+        }
+    }
+    out
+}
+
+/// `gap1-2`: the second problem of the first file, to be maximised.
+pub fn agents(record: &Record) -> Option<f64> {
+    if !record.is("generalised assignment (max)") || record.formulation.contains("Dantzig") {
+        return None;
+    }
+    let (file, number) = record.instance.split_once('-').unwrap();
+    let numbers = numbers(&format!("gap/{file}.txt"))?;
+    let mut rest = &numbers[1..];
+    for left in (1..=number.parse::<usize>().unwrap()).rev() {
+        let (m, n) = (count(rest[0]), count(rest[1]));
+        let length = 2 + 2 * m * n + m;
+        if left > 1 {
+            rest = &rest[length..];
+            continue;
+        }
+        let (costs, hours, there) =
+            (&rest[2..2 + m * n], &rest[2 + m * n..2 + 2 * m * n], &rest[2 + 2 * m * n..length]);
+        let on = instance(&format!(
+            "I\n{}\n\nJ\n{}\n\nc by i, j\n{}\na by i, j\n{}\nb by i\n{}\n",
+            names("m", m),
+            names("j", n),
+            grid(("m", m), ("j", n), costs, -1.0),
+            grid(("m", m), ("j", n), hours, 1.0),
+            row("m", there),
+        ));
+        return Some(-value_of(shipped("gap/plain"), &on, record.bounds()));
+    }
+    None
+}
+
+#[allow(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "small and whole")]
+fn count(number: f64) -> usize {
+    number as usize
+}
+
+pub fn resources(record: &Record) -> Option<f64> {
+    if !record.is("multi-dimensional knapsack (max)") {
+        return None;
+    }
+    let number: usize = record.instance.rsplit_once('-').unwrap().1.parse().unwrap();
+    let numbers = numbers("mknap/mknap1.txt")?;
+    let mut rest = &numbers[1..];
+    for left in (1..=number).rev() {
+        let (n, m) = (count(rest[0]), count(rest[1]));
+        let length = 3 + n + m * n + m;
+        if left > 1 {
+            rest = &rest[length..];
+            continue;
+        }
+        let on = instance(&format!(
+            "I\n{}\n\nR\n{}\n\nc by i\n{}\na by r, i\n{}\nb by r\n{}\n",
+            names("i", n),
+            names("r", m),
+            row("i", &rest[3..3 + n]),
+            grid(("r", m), ("i", n), &rest[3 + n..3 + n + m * n], 1.0),
+            row("r", &rest[3 + n + m * n..length]),
+        ));
+        return Some(value_of(shipped("multi-knapsack/plain"), &on, record.bounds()));
+    }
+    None
+}

@@ -5,7 +5,7 @@ use serde_json::Value;
 
 use crate::{Record, shipped, value_of};
 
-pub fn bent(record: &Record) -> Option<f64> {
+pub(crate) fn bent(record: &Record) -> Option<f64> {
     if !record.is("piecewise linear") || record.quantity.starts_with("locally") {
         return None;
     }
@@ -39,7 +39,7 @@ pub fn bent(record: &Record) -> Option<f64> {
 }
 
 /// Minimum times alone: gains of hours on, the cost of a start, no load.
-pub fn minimum_times(record: &Record) -> Option<f64> {
+pub(crate) fn minimum_times(record: &Record) -> Option<f64> {
     let given: Value = match record.problem.as_str() {
         "unit commitment (min up/down polytope, max)" => {
             serde_json::from_str(&record.instance).unwrap()

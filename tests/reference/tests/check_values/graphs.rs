@@ -7,7 +7,7 @@ use hullward_tests_reference::round_trip::{formulation, instance, rival, root};
 
 use crate::{Record, row, shipped, value_of, whole};
 
-pub fn stable(record: &Record) -> Option<f64> {
+pub(crate) fn stable(record: &Record) -> Option<f64> {
     if !record.is("stable set") || record.instance == "queen8" && !whole() {
         return None;
     }
@@ -21,7 +21,7 @@ pub fn stable(record: &Record) -> Option<f64> {
     }
 }
 
-pub fn colours(record: &Record) -> Option<f64> {
+pub(crate) fn colours(record: &Record) -> Option<f64> {
     if !record.is("graph colouring") || !record.formulation.starts_with("asymmetric") {
         return None;
     }
@@ -30,7 +30,7 @@ pub fn colours(record: &Record) -> Option<f64> {
 }
 
 /// Each node matched: the degree rows as equations, minimised.
-pub fn matching(record: &Record) -> Option<f64> {
+pub(crate) fn matching(record: &Record) -> Option<f64> {
     if !record.is("min-weight perfect matching") {
         return None;
     }

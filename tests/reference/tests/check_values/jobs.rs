@@ -9,7 +9,7 @@ use tree::Settings;
 use crate::{Record, row, shipped, value_of};
 
 /// Jobs by their numbers: times, weights, due dates.
-pub fn machine(record: &Record) -> Option<f64> {
+pub(crate) fn machine(record: &Record) -> Option<f64> {
     if !record.is("single machine") {
         return None;
     }
@@ -69,7 +69,7 @@ fn latest() -> f64 {
 
 /// The relaxation by times of a shop, with a horizon, starts within their windows: the tighter it is,
 /// the better the bound.
-pub fn shops(record: &Record) -> Option<f64> {
+pub(crate) fn shops(record: &Record) -> Option<f64> {
     let (_, horizon) = record.formulation.split_once("horizon H=")?;
     let horizon = horizon.split(',').next()?.parse().ok()?;
     let text = open_data(&format!("jobshop/{}", record.instance), "JSPLIB")?;

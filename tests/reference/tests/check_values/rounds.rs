@@ -5,7 +5,7 @@ use hullward_tests_reference::open_data;
 use crate::{Record, shipped, value_of};
 
 /// Rounds with a number of vehicles, or with as many as wanted.
-pub fn rounds(record: &Record) -> Option<f64> {
+pub(crate) fn rounds(record: &Record) -> Option<f64> {
     if !record.is("CVRP") || !record.bounds() {
         return None;
     }

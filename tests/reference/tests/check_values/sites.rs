@@ -6,7 +6,7 @@ use instance::Datum;
 use crate::{Record, shipped, value_of, whole};
 
 /// `cap41 (= cap71 capacity 5000)`, `cap71 (capacity 58268)`, or `cap41` alone by the digits.
-pub fn facilities(record: &Record) -> Option<f64> {
+pub(crate) fn facilities(record: &Record) -> Option<f64> {
     let limited = record.is("CFL");
     if !limited && !record.is("UFL") {
         return None;

@@ -51,7 +51,7 @@ fn rolls(text: &str) -> Instance {
     ))
 }
 
-pub fn cutting(record: &Record) -> Option<f64> {
+pub(crate) fn cutting(record: &Record) -> Option<f64> {
     if !record.is("cutting stock") {
         return None;
     }
@@ -65,7 +65,7 @@ pub fn cutting(record: &Record) -> Option<f64> {
 }
 
 /// The numbers of a file from its `n`-th problem of agents or of rows on.
-pub fn numbers(file: &str) -> Option<Vec<f64>> {
+pub(crate) fn numbers(file: &str) -> Option<Vec<f64>> {
     let text = open_data(file, "the OR-Library")?;
     Some(text.split_whitespace().map(|word| word.parse().unwrap()).collect())
 }
@@ -82,7 +82,7 @@ fn grid(rows: (&str, usize), columns: (&str, usize), cells: &[f64], sign: f64) -
 }
 
 /// `gap1-2`: the second problem of the first file, to be maximised.
-pub fn agents(record: &Record) -> Option<f64> {
+pub(crate) fn agents(record: &Record) -> Option<f64> {
     if !record.is("generalised assignment (max)") || record.formulation.contains("Dantzig") {
         return None;
     }
@@ -116,7 +116,7 @@ fn count(number: f64) -> usize {
     number as usize
 }
 
-pub fn resources(record: &Record) -> Option<f64> {
+pub(crate) fn resources(record: &Record) -> Option<f64> {
     if !record.is("multi-dimensional knapsack (max)") {
         return None;
     }

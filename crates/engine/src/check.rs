@@ -6,7 +6,7 @@ use std::collections::BTreeMap;
 use instance::Instance;
 use model::Model;
 use notation::syntax::Formulation;
-use notation::{Bound, Checked, Diagnostic, Expansion, Limits, Progress, utf16_range};
+use notation::{Binding, Bound, Checked, Diagnostic, Expansion, Limits, Progress, utf16_range};
 use record::message::{CheckJob, CheckReport, CheckedSize, Complaint, Remark, TextEdit};
 
 use crate::map::{of_diagnostic, of_typeset};
@@ -60,7 +60,11 @@ fn expand(
     instance: &Instance,
     bind: &BTreeMap<String, String>,
 ) -> Result<Option<(Model, Vec<Diagnostic>)>, Vec<Diagnostic>> {
-    let bound: Bound = notation::bind(checked, instance, bind)?;
+    let mut binding = Binding::new(checked, bind);
+    if binding.advance(GLANCE, instance) == Progress::Working {
+        return Ok(None);
+    }
+    let bound: Bound = binding.finish()?;
     let mut expansion = Expansion::new(bound, &BTreeMap::new(), Limits::default());
     match expansion.advance(GLANCE) {
         Progress::Working => Ok(None),

@@ -7,7 +7,7 @@ use std::rc::Rc;
 use instance::Reading;
 use model::{FamilyState, Model};
 use notation::syntax::Formulation;
-use notation::{Checked, Diagnostic, Expansion, Limits};
+use notation::{Binding, Checked, Diagnostic, Expansion, Limits, Progress};
 use record::message::LaneJob;
 use record::results::ErrorReport;
 use record::scenario::{InstanceText, Rival, Scenario};
@@ -33,9 +33,18 @@ pub(crate) struct Notation {
     tree: Formulation,
     checked: Checked,
     warnings: Vec<Diagnostic>,
-    expansion: Expansion,
+    stage: Stage,
     reading: Rc<Reading>,
-    wanted: BTreeMap<String, record::scenario::FamilyState>,
+    rival: Rival,
+}
+
+/// How far it is.
+#[derive(Debug)]
+enum Stage {
+    Binding(Box<Binding>),
+    Expanding(Box<Expansion>),
+    /// What is wrong with the data.
+    Failed(Vec<Diagnostic>),
 }
 
 /// A rival that is expanded.
@@ -52,7 +61,7 @@ pub(crate) struct Loaded {
 }
 
 impl Loading {
-    /// Reads, parses, checks and binds.
+    /// Reads, parses and checks.
     ///
     /// # Errors
     /// What cannot be read, with its places in the text that it is in.
@@ -78,23 +87,17 @@ impl Loading {
         }
         let (names, assumed) = notation::assumed(&text, &checked, instance, &given.bind);
         found.extend(assumed);
-        let bound = notation::bind(&checked, instance, &names)
-            .map_err(|wrong| not_a_model(&text, &[found.clone(), wrong].concat()))?;
-        let states = states(&job.rival);
-        let expansion = Expansion::new(bound, &states, Limits::default());
-        let wanted = job.rival.families.clone();
+        let stage = Stage::Binding(Box::new(Binding::new(&checked, &names)));
+        let rival = Rival { text: None, ..job.rival.clone() };
         let (tree, warnings) = (parse.tree, found);
-        let notation =
-            Notation { title, text, tree, checked, warnings, expansion, reading, wanted };
+        let notation = Notation { title, text, tree, checked, warnings, stage, reading, rival };
         Ok(Self::Notation(Box::new(notation)))
     }
 
-    /// Expands for about `ticks`; whether there is more to do.
+    /// Binds and expands for about `ticks`; whether there is more to do.
     pub(crate) fn advance(&mut self, ticks: u64) -> bool {
         match self {
-            Self::Notation(notation) => {
-                notation.expansion.advance(ticks) == notation::Progress::Working
-            }
+            Self::Notation(notation) => notation.advance(ticks),
             Self::Model(_) => false,
         }
     }
@@ -112,15 +115,48 @@ impl Loading {
 }
 
 impl Notation {
-    fn finish(self) -> Result<Loaded, ErrorReport> {
-        let Self { title, text, tree, checked, mut warnings, expansion, reading, wanted } = self;
-        let (model, further) = expansion
-            .finish()
-            .map_err(|wrong| not_a_model(&text, &[warnings.clone(), wrong].concat()))?;
+    fn advance(&mut self, ticks: u64) -> bool {
+        match &mut self.stage {
+            Stage::Binding(binding) => {
+                let Some(instance) = &self.reading.instance else { return false };
+                if binding.advance(ticks, instance) == Progress::Finished {
+                    self.expand();
+                }
+                true
+            }
+            Stage::Expanding(expansion) => expansion.advance(ticks) == Progress::Working,
+            Stage::Failed(_) => false,
+        }
+    }
+
+    /// All data are found, or what lacks is known.
+    fn expand(&mut self) {
+        let stage = std::mem::replace(&mut self.stage, Stage::Failed(Vec::new()));
+        let Stage::Binding(binding) = stage else { return };
+        self.stage = match binding.finish() {
+            Ok(bound) => {
+                let states = states(&self.rival);
+                Stage::Expanding(Box::new(Expansion::new(bound, &states, Limits::default())))
+            }
+            Err(wrong) => Stage::Failed(wrong),
+        };
+    }
+
+    fn finish(mut self) -> Result<Loaded, ErrorReport> {
+        while self.advance(u64::MAX) {}
+        let Self { title, text, tree, checked, mut warnings, stage, reading, rival } = self;
+        let expanded = match stage {
+            Stage::Expanding(expansion) => expansion.finish(),
+            Stage::Failed(wrong) => Err(wrong),
+            // only where there is no instance, which has been told
+            Stage::Binding(_) => Err(Vec::new()),
+        };
+        let (model, further) =
+            expanded.map_err(|wrong| not_a_model(&text, &[warnings.clone(), wrong].concat()))?;
         warnings.extend(further);
         warnings.extend(notation::lint(&tree, &checked, &model));
         let known: Vec<&str> = model.families().iter().map(|family| family.name.as_str()).collect();
-        for name in wanted.keys() {
+        for name in rival.families.keys() {
             if !known.contains(&name.as_str()) {
                 return Err(unknown("rival", "constraint family", name, &known));
             }

@@ -34,6 +34,9 @@ pub(crate) fn guess(text: &str) -> Reader {
     if found.iter().any(|line| is_by_heading(line.text) || is_equation(line.text)) {
         return Reader::Blocks;
     }
+    if is_one_set(&found) {
+        return Reader::Blocks;
+    }
     // A title stands before a blank line.
     let titled = all.iter().position(|line| !line.is_blank() && !line.is_remark());
     let found = &found[usize::from(titled.is_some_and(|first| is_title(&all[first..])))..];
@@ -41,6 +44,16 @@ pub(crate) fn guess(text: &str) -> Reader {
         return Reader::Arcs;
     }
     guess_by_rows(text, found)
+}
+
+/// A name alone on its line, then a line of words: `N` and `a b c d`.
+fn is_one_set(found: &[Line]) -> bool {
+    let [name, members] = found else { return false };
+    let cells =
+        |line: &Line| -> Vec<String> { line.text.split_whitespace().map(str::to_owned).collect() };
+    let (name, members) = (cells(name), cells(members));
+    let words = members.len() > 1 && members.iter().all(|cell| is_word(cell, true));
+    matches!(&name[..], [one] if is_word(one, true) && !members.contains(one)) && words
 }
 
 fn guess_by_rows(text: &str, found: &[Line]) -> Reader {
@@ -167,6 +180,8 @@ mod tests {
             ("i j c\n1 2 5\n2 3 7\n3 1 4\n1 3 9", Reader::Arcs),
             ("from to\nfrom 0 1\nto 1 0", Reader::Matrix),
             ("a b", Reader::Matrix),
+            ("N\na b c d", Reader::Blocks),
+            ("N\na 1", Reader::Matrix),
             ("one end minutes\na b 3\nb c 4", Reader::Arcs),
             ("client depot cost\na p 3\nb q 4", Reader::Table),
             ("client demand cost\na 3 4\nb 5 6\nc 7 8", Reader::Table),

@@ -2,6 +2,7 @@
 //! evaluated.
 
 use std::collections::BTreeMap;
+use std::ops::Bound::{Excluded, Unbounded};
 use std::rc::Rc;
 
 use instance::{Datum, Instance};
@@ -10,9 +11,10 @@ use model::Number;
 use crate::check::Checked;
 use crate::diagnostic::{Diagnostic, data as message, tidy};
 use crate::evaluate::{
-    Element, Environment, Evaluated, Evaluator, Set, TupleMap, Value, Values, fail,
+    Element, Environment, Evaluated, Evaluator, Found, Set, TupleMap, Value, Values, Walk, fail,
 };
-use crate::plan::{Node, Root, Shape, Step, Symbol, SymbolId};
+use crate::expand::Progress;
+use crate::plan::{Node, Root, Shape, Symbol, SymbolId};
 use crate::syntax::Relation;
 
 /// A formulation with the data of an instance.
@@ -32,40 +34,103 @@ pub fn bind(
     instance: &Instance,
     names: &BTreeMap<String, String>,
 ) -> Result<Bound, Vec<Diagnostic>> {
-    if !checked.sound {
-        return Err(vec![message::unsound()]);
+    let mut binding = Binding::new(checked, names);
+    while binding.advance(u64::MAX, instance) == Progress::Working {}
+    binding.finish()
+}
+
+/// The same in slices, a tick being a cell of a table or an index tuple. A set is read, and a
+/// definition without indices evaluated, in one go.
+#[derive(Debug)]
+pub struct Binding {
+    evaluator: Evaluator,
+    names: BTreeMap<String, String>,
+    notes: Vec<Diagnostic>,
+    errors: Vec<Diagnostic>,
+    /// The place of the next symbol in the order of the plan.
+    next: usize,
+    open: Option<Indexed>,
+}
+
+/// A symbol with indices that is being bound.
+#[derive(Debug)]
+struct Indexed {
+    id: SymbolId,
+    /// The instance's values so far.
+    cells: TupleMap<Value>,
+    /// Whether cells of a table are still to come, and behind which.
+    table: Option<Option<Vec<String>>>,
+    walk: Walk,
+    env: Environment,
+    values: TupleMap<Value>,
+}
+
+impl Binding {
+    /// Begins. As for [`bind()`].
+    #[must_use]
+    pub fn new(checked: &Checked, names: &BTreeMap<String, String>) -> Self {
+        let errors = if checked.sound { Vec::new() } else { vec![message::unsound()] };
+        let evaluator = Evaluator::new(Rc::clone(&checked.plan));
+        let next = if checked.sound { 0 } else { usize::MAX };
+        let names = names.clone();
+        Self { evaluator, names, notes: Vec::new(), errors, next, open: None }
     }
-    let mut binder = Binder {
-        evaluator: Evaluator::new(Rc::clone(&checked.plan)),
-        instance,
-        names,
-        notes: Vec::new(),
-        errors: Vec::new(),
-    };
-    let plan = Rc::clone(&checked.plan);
-    for &id in &plan.order {
-        // nothing needs what is never used, and its shape may not be known
-        if plan.symbols[id].used {
-            binder.symbol(id);
+
+    /// Goes on for about so many ticks; `instance` must be the same each time.
+    pub fn advance(&mut self, ticks: u64, instance: &Instance) -> Progress {
+        let plan = Rc::clone(&self.evaluator.plan);
+        let mut budget = ticks;
+        let Self { evaluator, names, notes, errors, next, open } = self;
+        let mut binder = Binder { evaluator, instance, names, notes, errors };
+        loop {
+            if let Some(one) = open {
+                match binder.go_on(one, &mut budget) {
+                    Ok(false) => return Progress::Working,
+                    Ok(true) => {
+                        let values = Values::Indexed(std::mem::take(&mut one.values));
+                        binder.evaluator.values[one.id] = Some(values);
+                    }
+                    Err(diagnostic) => binder.failed(&plan.symbols[one.id], diagnostic),
+                }
+                *open = None;
+            }
+            let Some(&id) = plan.order.get(*next) else { return Progress::Finished };
+            if budget == 0 {
+                return Progress::Working;
+            }
+            budget -= 1;
+            *next += 1;
+            // nothing needs what is never used, and its shape may not be known
+            if plan.symbols[id].used {
+                *open = binder.begin(id);
+            }
         }
     }
-    if binder.errors.is_empty() {
-        Ok(Bound { evaluator: binder.evaluator, notes: binder.notes })
-    } else {
-        Err(tidy(binder.errors))
+
+    /// All data and definitions.
+    ///
+    /// # Errors
+    /// As for [`bind()`].
+    pub fn finish(self) -> Result<Bound, Vec<Diagnostic>> {
+        if self.errors.is_empty() {
+            Ok(Bound { evaluator: self.evaluator, notes: self.notes })
+        } else {
+            Err(tidy(self.errors))
+        }
     }
 }
 
 struct Binder<'i> {
-    evaluator: Evaluator,
+    evaluator: &'i mut Evaluator,
     instance: &'i Instance,
     names: &'i BTreeMap<String, String>,
-    notes: Vec<Diagnostic>,
-    errors: Vec<Diagnostic>,
+    notes: &'i mut Vec<Diagnostic>,
+    errors: &'i mut Vec<Diagnostic>,
 }
 
 impl<'i> Binder<'i> {
-    fn symbol(&mut self, id: SymbolId) {
+    /// Binds a symbol, or begins with one that has indices.
+    fn begin(&mut self, id: SymbolId) -> Option<Indexed> {
         let plan = Rc::clone(&self.evaluator.plan);
         self.evaluator.start_work();
         let symbol = &plan.symbols[id];
@@ -74,23 +139,41 @@ impl<'i> Binder<'i> {
         if lacks {
             let offers: Vec<String> =
                 self.instance.data().map(|(name, _)| name.to_owned()).take(20).collect();
-            self.errors.push(message::lacks(&symbol.name, self.key(symbol), &offers, symbol.span));
-            return;
+            let key = self.key(symbol).to_owned();
+            self.errors.push(message::lacks(&symbol.name, &key, &offers, symbol.span));
+            return None;
         }
-        let values = if symbol.indices.is_empty() {
-            self.single(symbol, datum).map(Values::Single)
-        } else {
-            self.indexed(symbol, datum).map(Values::Indexed)
-        };
-        match values {
-            Ok(values) => self.evaluator.values[id] = Some(values),
-            Err(diagnostic) => {
-                let diagnostic = crate::evaluate::placed(diagnostic, symbol.span);
-                // what it needs lacks: that has been said
-                if self.errors.is_empty() || diagnostic.code != message::UNAVAILABLE {
-                    self.errors.push(*diagnostic);
-                }
+        if symbol.indices.is_empty() {
+            match self.single(symbol, datum) {
+                Ok(value) => self.evaluator.values[id] = Some(Values::Single(value)),
+                Err(diagnostic) => self.failed(symbol, diagnostic),
             }
+            return None;
+        }
+        let table = datum.is_some_and(|datum| self.is_table(symbol, datum));
+        let cells = match datum.filter(|_| !table).map(|datum| self.cells(symbol, datum)) {
+            Some(Ok(cells)) => cells,
+            Some(Err(diagnostic)) => {
+                self.failed(symbol, diagnostic);
+                return None;
+            }
+            None => TupleMap::default(),
+        };
+        Some(Indexed {
+            id,
+            cells,
+            table: table.then_some(None),
+            walk: Walk::default(),
+            env: self.evaluator.environment(),
+            values: TupleMap::default(),
+        })
+    }
+
+    fn failed(&mut self, symbol: &Symbol, diagnostic: Box<Diagnostic>) {
+        let diagnostic = crate::evaluate::placed(diagnostic, symbol.span);
+        // what it needs lacks: that has been said
+        if self.errors.is_empty() || diagnostic.code != message::UNAVAILABLE {
+            self.errors.push(*diagnostic);
         }
     }
 
@@ -126,7 +209,7 @@ impl<'i> Binder<'i> {
             (None, None) => return fail(message::cell(&symbol.name, symbol.span)),
         };
         let value = self.shaped(symbol, value)?;
-        self.contained(symbol, &value, &symbol.name, &mut env)?;
+        self.contained(symbol, &value, &[], &mut env)?;
         Ok(value)
     }
 
@@ -200,11 +283,11 @@ impl<'i> Binder<'i> {
         &mut self,
         symbol: &Symbol,
         value: &Value,
-        what: &str,
+        key: &[Element],
         env: &mut Environment,
     ) -> Evaluated<()> {
         if let Value::Number(number) = value {
-            return self.in_range(symbol, number, what, env);
+            return self.in_range(symbol, number, key, env);
         }
         let Some(parent) = &symbol.parent else { return Ok(()) };
         // V × V is not written out: each place is checked against its own set
@@ -240,11 +323,12 @@ impl<'i> Binder<'i> {
         &mut self,
         symbol: &Symbol,
         number: &Number,
-        what: &str,
+        key: &[Element],
         env: &mut Environment,
     ) -> Evaluated<()> {
         if symbol.whole && !number.is_int() && self.notes.len() < 50 {
-            self.notes.push(message::not_whole(what, symbol.span));
+            let what = self.evaluator.shown(&symbol.name, key, false);
+            self.notes.push(message::not_whole(&what, symbol.span));
         }
         for (relation, bound) in &symbol.range {
             let bound = self.evaluator.number(bound, env)?;
@@ -255,84 +339,91 @@ impl<'i> Binder<'i> {
                 _ => *number > bound,
             };
             if !holds && self.notes.len() < 50 {
-                self.notes.push(message::out_of_range(what, symbol.span));
+                let what = self.evaluator.shown(&symbol.name, key, false);
+                self.notes.push(message::out_of_range(&what, symbol.span));
             }
         }
         Ok(())
     }
 
     /// One value for each index tuple: the instance's where it has one, else the default.
-    fn indexed(&mut self, symbol: &Symbol, datum: Option<&Datum>) -> Evaluated<TupleMap<Value>> {
-        let cells = match datum {
-            Some(datum) => self.cells(symbol, datum)?,
-            None => TupleMap::default(),
-        };
-        let keys = self.keys(&symbol.steps, &symbol.indices)?;
-        let mut values = TupleMap::default();
-        for (key, mut env) in keys {
-            let what = || self.evaluator.shown(&symbol.name, &key, false);
-            let value = match (cells.get(&key), &symbol.value, &symbol.shape) {
-                (Some(value), ..) => value.clone(),
-                (None, Some(default), _) => self.evaluator.value(default, &mut env)?,
-                (None, None, Shape::Set(roots)) => {
-                    Value::Set(Rc::new(Set::new(roots.len(), std::iter::empty())))
-                }
-                (None, None, _) => {
-                    let named = self.key(symbol);
-                    let what = if named == symbol.name {
-                        what()
-                    } else {
-                        format!("{} (a cell of {named})", what())
-                    };
-                    return fail(message::cell(&what, symbol.span));
-                }
-            };
-            let value = self.shaped(symbol, value)?;
-            let what = what();
-            self.contained(symbol, &value, &what, &mut env)?;
-            values.insert(&key, value);
+    /// Whether that was all within the budget.
+    fn go_on(&mut self, open: &mut Indexed, budget: &mut u64) -> Evaluated<bool> {
+        let plan = Rc::clone(&self.evaluator.plan);
+        let symbol = &plan.symbols[open.id];
+        if !self.table_cells(symbol, open, budget) {
+            return Ok(false);
         }
-        Ok(values)
-    }
-
-    /// The index tuples of a symbol, each with its environment.
-    fn keys(
-        &self,
-        steps: &[Step],
-        indices: &[Node],
-    ) -> Evaluated<Vec<(Vec<Element>, Environment)>> {
-        let mut keys = Vec::new();
-        let mut env = self.evaluator.environment();
-        self.evaluator.each(steps, &mut env, |evaluator, env, _| {
-            if keys.len() >= crate::evaluate::SET_LIMIT {
-                let limit = crate::evaluate::SET_LIMIT;
-                return fail(crate::diagnostic::size::set(
-                    limit as u128 + 1,
-                    limit,
-                    crate::place::Span::default(),
-                ));
+        loop {
+            match open.walk.next(&symbol.steps, self.evaluator, &mut open.env, budget)? {
+                Found::Paused => return Ok(false),
+                Found::Done => return Ok(true),
+                Found::Tuple(_) => self.one_value(symbol, open)?,
             }
-            keys.push((evaluator.tuple(indices, env)?, env.clone()));
-            Ok(())
-        })?;
-        Ok(keys)
+        }
     }
 
-    /// The cells of a datum: numbers of a table, or the last place of tuples as an element or
-    /// as members of a set.
+    fn one_value(&mut self, symbol: &Symbol, open: &mut Indexed) -> Evaluated<()> {
+        let limit = crate::evaluate::SET_LIMIT;
+        if open.values.len() >= limit {
+            let span = crate::place::Span::default();
+            return fail(crate::diagnostic::size::set(limit as u128 + 1, limit, span));
+        }
+        let env = &mut open.env;
+        let key = self.evaluator.tuple(&symbol.indices, env)?;
+        let value = match (open.cells.get(&key), &symbol.value, &symbol.shape) {
+            (Some(value), ..) => value.clone(),
+            (None, Some(default), _) => self.evaluator.value(default, env)?,
+            (None, None, Shape::Set(roots)) => {
+                Value::Set(Rc::new(Set::new(roots.len(), std::iter::empty())))
+            }
+            (None, None, _) => {
+                let named = self.key(symbol);
+                let what = self.evaluator.shown(&symbol.name, &key, false);
+                let what =
+                    if named == symbol.name { what } else { format!("{what} (a cell of {named})") };
+                return fail(message::cell(&what, symbol.span));
+            }
+        };
+        let value = self.shaped(symbol, value)?;
+        self.contained(symbol, &value, &key, env)?;
+        open.values.insert(&key, value);
+        Ok(())
+    }
+
+    /// Whether a datum is a table with the indices of a symbol, to be read cell by cell.
+    fn is_table(&self, symbol: &Symbol, datum: &Datum) -> bool {
+        let number = matches!(symbol.shape, Shape::Number | Shape::Element(_));
+        number && matches!(datum, Datum::Table { arity, .. } if *arity == symbol.indices.len())
+    }
+
+    /// Goes on with the cells of a table; whether all of them are read.
+    fn table_cells(&mut self, symbol: &Symbol, open: &mut Indexed, budget: &mut u64) -> bool {
+        let Some(behind) = open.table.take() else { return true };
+        let Some(Datum::Table { cells, .. }) = self.instance.get(self.key(symbol)) else {
+            return true;
+        };
+        let mut pool = self.evaluator.pool.borrow_mut();
+        let from = behind.map_or(Unbounded, Excluded);
+        for (key, value) in cells.range((from, Unbounded)) {
+            let own: Vec<Element> = key.iter().map(|cell| pool.intern(cell)).collect();
+            open.cells.insert(&own, Value::Number(value.clone()));
+            *budget = budget.saturating_sub(1);
+            if *budget == 0 {
+                open.table = Some(Some(key.clone()));
+                return false;
+            }
+        }
+        true
+    }
+
+    /// The cells of a datum that is no table: the last place of tuples as an element or as members
+    /// of a set.
     fn cells(&self, symbol: &Symbol, datum: &Datum) -> Evaluated<TupleMap<Value>> {
         let places = symbol.indices.len();
         let mut pool = self.evaluator.pool.borrow_mut();
         let mut cells = TupleMap::default();
         match (datum, &symbol.shape) {
-            (Datum::Table { arity, cells: table }, Shape::Number | Shape::Element(_))
-                if *arity == places =>
-            {
-                for (key, value) in table {
-                    let key: Vec<Element> = key.iter().map(|cell| pool.intern(cell)).collect();
-                    cells.insert(&key, Value::Number(value.clone()));
-                }
-            }
             (Datum::Tuples { arity, rows }, Shape::Element(_)) if *arity == places + 1 => {
                 for row in rows {
                     let mut key: Vec<Element> = row.iter().map(|cell| pool.intern(cell)).collect();

@@ -5,7 +5,7 @@
 //! | read | [`parse()`] | a text | a tree with places, and what could not be read |
 //! | check | [`check()`] | a tree | names and shapes resolved |
 //! | linearise | [`offers()`] | what was said of a text | the same with rows that mend it |
-//! | bind | [`bind()`] | that and an instance | all data found, definitions evaluated |
+//! | bind | [`Binding`] | that and an instance | all data found, definitions evaluated, in slices |
 //! | expand | [`Expansion`] | that | a [`model::Model`], in slices |
 //! | look for pitfalls | [`lint()`] | tree, names and model | warnings with figures and mends |
 //! | print | [`print()`], [`latex()`] | a tree | Unicode text or LaTeX that reads back as the same tree |
@@ -37,7 +37,7 @@ pub mod syntax;
 
 use std::collections::BTreeMap;
 
-pub use bind::{Bound, bind};
+pub use bind::{Binding, Bound, bind};
 pub use check::{Checked, check};
 pub use diagnostic::{Diagnostic, Edit, Mend, Severity};
 pub use expand::{Expansion, Limits, Progress, States};

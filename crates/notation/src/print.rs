@@ -277,7 +277,7 @@ fn call(function: Function, arguments: &[Expression]) -> String {
 }
 
 fn name(name: &Name) -> String {
-    let mut out = name.text.clone();
+    let mut out = name.shown().to_owned();
     if !name.indices.is_empty() {
         let _ = write!(out, "_{{{}}}", indices(&name.indices));
     }

@@ -166,6 +166,19 @@ pub struct Name {
     pub superscript: Option<Box<Expression>>,
 }
 
+impl Name {
+    /// The name as it is shown: without the mark of one that is also declared without indices.
+    #[must_use]
+    pub fn shown(&self) -> &str {
+        plain(&self.text)
+    }
+}
+
+/// A name without the mark that tells `K_i` from a set `K`.
+pub(crate) fn plain(name: &str) -> &str {
+    name.strip_suffix('_').unwrap_or(name)
+}
+
 /// Operators of the additive level.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Additive {
@@ -301,6 +314,21 @@ pub(crate) fn each_name(expression: &mut Expression, visit: &mut dyn FnMut(&mut 
     }
     for child in children_mut(&mut expression.kind) {
         each_name(child, visit);
+    }
+}
+
+/// Visits the outermost expressions of all lines.
+pub(crate) fn each_outermost(tree: &mut Formulation, visit: &mut dyn FnMut(&mut Expression)) {
+    if let Some(objective) = &mut tree.objective {
+        visit(&mut objective.expression);
+    }
+    let lines = tree.data.iter_mut().chain(&mut tree.definitions).chain(&mut tree.statements);
+    for line in lines {
+        line.left.iter_mut().for_each(&mut *visit);
+        line.links.iter_mut().for_each(|(_, operand)| visit(operand));
+        for clause in &mut line.clauses {
+            clause.items.iter_mut().chain(&mut clause.such_that).for_each(&mut *visit);
+        }
     }
 }
 

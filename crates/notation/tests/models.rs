@@ -114,3 +114,10 @@ fn models_as_journals_print_them_come_out() {
 fn models_of_further_problems_come_out() {
     all_come_out("models/journals");
 }
+
+/// Nineteen more, in styles of other journals, written down before any was tried; half of them
+/// were not understood then.
+#[test]
+fn models_in_further_styles_come_out() {
+    all_come_out("models/further");
+}

@@ -90,3 +90,33 @@ fn a_milliard_of_rows_is_refused_before_the_first() {
     let found = expanded(&terms, &instance, 2_000_000).unwrap_err();
     assert!(found[0].message.contains("|V|·|V|·|V| = 1,000,000,000 terms"), "{found:?}");
 }
+
+/// The form over radii (Elloumi, Labbé & Pochet 2004) of a hundred sites: which pairs are the
+/// first of their distance asks of each pair whether none before it is as long, and the answer
+/// used to be counted to its end, ten thousand steps for each of ten thousand pairs.
+#[test]
+fn radii_of_a_hundred_sites_are_told_apart_in_time() {
+    let text = "data\n  I\n  J\n  p\n  d_{i,j} ∀ i ∈ I, j ∈ J\ndefinitions\n  \
+        b = max_{i ∈ I, j ∈ J} d_{i,j}\n  K = {(i,j) ∈ I × J : d_{i,j} < b, \
+        |{(h,k) ∈ I × J : d_{h,k} = d_{i,j}, h < i ∨ h = i ∧ k < j}| = 0}\nminimise\n  \
+        Σ_{(i,j) ∈ K} z_{i,j}\nsubject to\n  z_{i,j} + Σ_{h ∈ I : d_{h,k} ≤ d_{i,j}} y_h ≥ 1 \
+        ∀ (i,j) ∈ K, k ∈ J (reach)\n  Σ_{i ∈ I} y_i = p (open)\n  y_i ∈ {0,1} ∀ i ∈ I\n  \
+        z_{i,j} ∈ {0,1} ∀ (i,j) ∈ K\n";
+    let labels: Vec<String> = (0..100).map(|at| format!("v{at}")).collect();
+    let mut instance = Instance::new(instance::Reader::Blocks);
+    let mut cells = std::collections::BTreeMap::new();
+    for (i, from) in labels.iter().enumerate() {
+        for (j, to) in labels.iter().enumerate() {
+            let distance = i.abs_diff(j).pow(2) % 97;
+            cells.insert(vec![from.clone(), to.clone()], model::Number::from(distance));
+        }
+    }
+    instance.set("I", instance::Datum::Labels(labels.clone()));
+    instance.set("J", instance::Datum::Labels(labels));
+    instance.set("p", instance::Datum::Number(model::Number::from(5)));
+    instance.set("d", instance::Datum::Table { arity: 2, cells });
+    // squares modulo 97: 48 besides 0, and the largest of them is not asked for
+    let (model, _) = expanded(text, &instance, 2_000_000).unwrap();
+    assert_eq!(model.columns().len(), 100 + 48);
+    assert_eq!(model.row_count(), 48 * 100 + 1);
+}

@@ -5,7 +5,7 @@ use super::order::in_order_of_need;
 use super::{Bound, Checker, Local};
 use crate::diagnostic::{names as message, shapes, subsets};
 use crate::place::Span;
-use crate::plan::{Node, Pattern, Root, Step, SubsetPlan};
+use crate::plan::{Node, Pattern, Root, SetOperator, Step, SubsetPlan};
 use crate::syntax::{Clause, Expression, Kind, Name, Relation};
 
 /// The most indices that are bound on one line, and places that a tuple may have.
@@ -332,9 +332,22 @@ impl Checker<'_> {
             Pattern::Bind(slot) | Pattern::Same(slot) => Node::Slot(*slot),
             Pattern::Match(node) => node.clone(),
         });
-        subset.conditions.push((Node::Member(true, members.collect(), Box::new(set)), span));
-        let ground = subset.ground.clone();
-        work.steps.push(Step::Over { pattern, set: ground, span });
+        let (base, inside, set) = match set {
+            // j ∈ V ∖ S runs over V
+            Node::SetOperation(SetOperator::Difference, base, other)
+                if matches!(*other, Node::Subset) && !names_subset(&base) =>
+            {
+                (*base, false, *other)
+            }
+            Node::SetOperation(SetOperator::Intersection, base, other)
+                if matches!(*other, Node::Subset) && !names_subset(&base) =>
+            {
+                (*base, true, *other)
+            }
+            set => (subset.ground.clone(), true, set),
+        };
+        subset.conditions.push((Node::Member(inside, members.collect(), Box::new(set)), span));
+        work.steps.push(Step::Over { pattern, set: base, span });
     }
 
     /// The places of a pattern. One word for several places is split into its letters where

@@ -6,7 +6,7 @@ use super::{Checker, Form, Global, usage};
 use crate::diagnostic::{names as message, rows, shapes};
 use crate::place::Span;
 use crate::plan::{Node, Pattern, Root, Shape, Step, Symbol, SymbolId};
-use crate::syntax::{Expression, Kind, Line, Name, NumberSet, Relation};
+use crate::syntax::{Expression, Kind, Line, Multiplicative, Name, NumberSet, Relation};
 
 /// A name that a line declares.
 struct Declared<'t> {
@@ -253,6 +253,12 @@ impl<'t> Checker<'t> {
         if matches!(set.kind, Kind::NumberSet(_)) {
             return Some(Shape::Set(vec![Root::Integer]));
         }
+        if let Kind::Multiplicative(first, rest) = &set.kind
+            && rest.iter().all(|(operator, _)| *operator == Multiplicative::Cross)
+            && rest.iter().map(|(_, e)| e).chain([first.as_ref()]).all(whole_numbers)
+        {
+            return Some(Shape::Set(vec![Root::Integer; rest.len() + 1]));
+        }
         let (node, roots) = self.set(set)?;
         self.symbols[id].parent = Some(node);
         Some(Shape::Set(roots))
@@ -279,6 +285,12 @@ impl<'t> Checker<'t> {
         self.symbols[id].value = Some(typed.node);
         Some(shape)
     }
+}
+
+/// `ℤ`, `ℤ_+`.
+fn whole_numbers(set: &Expression) -> bool {
+    use NumberSet::{Integer, IntegerNonNegative, IntegerPositive};
+    matches!(&set.kind, Kind::NumberSet(Integer | IntegerNonNegative | IntegerPositive))
 }
 
 /// `0 ∈ V` says that the instance has a label 0, and declares nothing; so does `0` alone.

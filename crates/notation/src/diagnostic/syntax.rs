@@ -5,6 +5,7 @@ use crate::place::Span;
 
 /// At most 24 characters of a piece of text, for a message.
 pub(crate) fn short(text: &str) -> String {
+    let text = crate::syntax::plain(text);
     let mut out: String = text.chars().take(24).collect();
     if out.len() < text.len() {
         out.push('…');

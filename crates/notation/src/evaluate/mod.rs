@@ -171,6 +171,7 @@ impl Evaluator {
 
     /// `c[Ash → Birch]`, `u[Ash]`.
     pub(crate) fn shown(&self, name: &str, tuple: &[Element], arrow: bool) -> String {
+        let name = crate::syntax::plain(name);
         if tuple.is_empty() {
             return name.to_owned();
         }

@@ -2,6 +2,7 @@
 
 use std::cmp::Ordering;
 
+use super::walk::{Found, Walk};
 use super::{Element, Environment, Evaluated, Evaluator, Guard, fail};
 use crate::diagnostic::{shapes, subsets};
 use crate::place::Span;
@@ -10,6 +11,11 @@ use crate::syntax::Relation;
 
 impl Evaluator {
     pub(crate) fn truth(&self, node: &Node, env: &mut Environment) -> Evaluated<Guard> {
+        if let Some((equal, set)) = asks_emptiness(node)
+            && !self.depends_on_subset(set)
+        {
+            return Ok(Guard::known(self.is_empty(set, env)? == equal));
+        }
         match node {
             Node::Compare(relation, a, b) => {
                 let (a, b) = (self.number(a, env)?, self.number(b, env)?);
@@ -62,6 +68,18 @@ impl Evaluator {
             Node::Parity(odd, inner, span) => self.parity(*odd, inner, *span, env),
             Node::Clique(set, edges) => self.clique(set, edges, env),
             _ => fail(shapes::expected("a condition", "another value", Span::default())),
+        }
+    }
+
+    /// Whether a set has no member. What is built is walked to its first member only, so that
+    /// "the first pair of its length" asks little of each pair.
+    fn is_empty(&self, set: &Node, env: &mut Environment) -> Evaluated<bool> {
+        let Node::Builder(steps, _, span) = set else { return Ok(self.set(set, env)?.is_empty()) };
+        let (mut walk, mut budget) = (Walk::default(), u64::MAX);
+        match walk.next(steps, self, env, &mut budget)? {
+            Found::Tuple(guard) if guard.value() == Some(true) => Ok(false),
+            Found::Tuple(_) => fail(subsets::nonlinear(*span)),
+            Found::Paused | Found::Done => Ok(true),
         }
     }
 
@@ -156,6 +174,26 @@ impl Evaluator {
         let joined = |a, b| a == b || edges.contains(&[a, b]) || edges.contains(&[b, a]);
         let all = set.iter().all(|a| set.iter().all(|b| joined(a[0], b[0])));
         Ok(Guard::known(all))
+    }
+}
+
+/// `|S| = 0`, `S = ∅` (`true`), or the same with ≠, and the set.
+fn asks_emptiness(node: &Node) -> Option<(bool, &Node)> {
+    let (relation, set) = match node {
+        Node::Compare(relation, size, zero) => match (size.as_ref(), zero.as_ref()) {
+            (Node::Size(set), Node::Number(n)) if n.is_zero() => (relation, set.as_ref()),
+            _ => return None,
+        },
+        Node::Sets(relation, set, nothing) => match nothing.as_ref() {
+            Node::Members(_, members) if members.is_empty() => (relation, set.as_ref()),
+            _ => return None,
+        },
+        _ => return None,
+    };
+    match relation {
+        Relation::Equal => Some((true, set)),
+        Relation::NotEqual => Some((false, set)),
+        _ => None,
     }
 }
 

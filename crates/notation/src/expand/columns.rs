@@ -182,7 +182,7 @@ impl Expansion {
     fn flush(&mut self, number: usize, variable: &Variable) -> Evaluated<()> {
         let draft = std::mem::take(&mut self.draft);
         let arrow = is_arrow(&variable.roots);
-        self.builder.variable(&variable.name, arrow);
+        self.builder.variable(crate::syntax::plain(&variable.name), arrow);
         let open =
             |column: &DraftColumn| column.lower.is_none() && column.upper.is_some() && !column.free;
         if draft.columns.iter().any(|&kind| open(&draft.kinds[kind as usize])) {

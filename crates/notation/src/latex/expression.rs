@@ -232,7 +232,7 @@ impl<'t> Printer<'t> {
     }
 
     fn name(&self, name: &Name) -> String {
-        let mut out = name::text(&name.text, self.whole.contains(name.text.as_str()));
+        let mut out = name::text(name.shown(), self.whole.contains(name.text.as_str()));
         if !name.indices.is_empty() {
             let _ = write!(out, "_{{{}}}", self.joined(&name.indices, ",", ANY));
         }

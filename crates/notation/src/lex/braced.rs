@@ -8,6 +8,15 @@ use super::token::{Gap, Kind, Token};
 const LIMIT: usize = 20_000;
 
 impl Lexer<'_> {
+    /// Whether `{}` stands here as TeX has it, to space a sign as one between two operands.
+    pub(super) fn is_empty_group(&self) -> bool {
+        let Some(rest) = self.rest().strip_prefix("{}") else { return false };
+        let raised = self.tokens.last().map(|t| t.kind);
+        let raised = matches!(raised, Some(Kind::Underscore | Kind::Caret));
+        let sign = rest.trim_start_matches(' ').starts_with(['+', '-', '−', '=']);
+        !raised && (self.environment > 0 || sign)
+    }
+
     /// `\\left.`, `\\left\\{` before an array, or a bracket that stands for itself.
     pub(super) fn left(&mut self, whole: usize) {
         let start = self.at;

@@ -7,6 +7,7 @@ mod foreign;
 mod macros;
 mod phrase;
 pub(crate) mod prose;
+mod rows;
 mod table;
 mod tex;
 pub(crate) mod token;
@@ -59,6 +60,7 @@ fn lex_from(text: &str, from: Start, macros: Macros) -> (Vec<Token>, u32, Macros
     lexer.push(Kind::End, text.len(), text.len());
     settle_braces(&mut lexer.tokens);
     if from.depth == 0 {
+        lexer.tokens = rows::joined(lexer.tokens, text);
         settle_semicolons(&mut lexer.tokens, text);
     }
     (lexer.tokens, lexer.environment, lexer.macros)
@@ -107,7 +109,7 @@ impl Lexer<'_> {
 
     fn step(&mut self) {
         let Some(c) = self.rest().chars().next() else { return };
-        if c.is_alphabetic() && self.sentence() {
+        if (c.is_alphabetic() || c == '\\') && self.sentence() {
             return;
         }
         match c {
@@ -116,6 +118,7 @@ impl Lexer<'_> {
             '$' => self.dollar(),
             '\'' | '′' | '’' => self.prime(c),
             '\\' => self.backslash(),
+            '{' if self.is_empty_group() => self.at += 2,
             '&' => self.ampersand(),
             '0'..='9' => self.number(),
             '.' if self.rest()[1..].starts_with(|d: char| d.is_ascii_digit()) => self.number(),

@@ -2,6 +2,7 @@
 //! the share of …`. They say nothing to the model but for the definitions between their dollars:
 //! `Let $V' = V \setminus \{0\}$ be the customers.`
 
+use super::phrase::phrase;
 use super::token::{Gap, Kind, Token};
 use super::{Lexer, foreign, lex, table};
 
@@ -11,7 +12,8 @@ pub(crate) const PROSE: &str = "prose";
 /// Words with which a sentence begins.
 const OPENERS: &str = "let where we here the denote suppose assume consider given in this these \
     there our its it note moreover furthermore finally then thus with all each to as an \
-    constraint constraints equation equations inequality inequalities objective variable variables";
+    constraint constraints equation equations inequality inequalities objective variable variables \
+    decision binary integer continuous parameter parameters";
 
 /// The fewest words of a sentence, its first one among them.
 const FEWEST: usize = 4;
@@ -27,7 +29,11 @@ impl Lexer<'_> {
         let anew = self.gap.has(Gap::NEWLINE)
             || self.tokens.last().is_some_and(|token| token.kind == Kind::Break);
         let begins = anew && self.environment == 0 && self.depth == 0;
-        if !begins || !is_sentence(line_of(&text[start..])) {
+        if !begins {
+            return false;
+        }
+        let line = line_of(&text[start..]);
+        if !(is_sentence(line) || is_headed(line)) {
             return false;
         }
         let mut end = start + line_of(&text[start..]).len();
@@ -51,10 +57,16 @@ impl Lexer<'_> {
             pieces.push((at, piece));
             at += piece.len() + 1;
         }
+        let variables = text[start..end].contains("variables");
         let mut next = 1;
         while next + 1 < pieces.len() {
             let (at, inner) = pieces[next];
-            if !defines(&lex(inner, 0), inner) {
+            // Ξ = {x_t, y_t} is the set of variables
+            let listed = variables
+                && inner.contains("\\{")
+                && !inner.contains(['|', ':', '.'])
+                && !inner.contains("dots");
+            if listed || !defines(&lex(inner, 0), inner) {
                 next += 2;
                 continue;
             }
@@ -98,7 +110,12 @@ fn defines(tokens: &[Token], text: &str) -> bool {
         && matches!(tokens[1].kind, Kind::Underscore | Kind::Caret | Kind::Equal);
     let number = tokens.len() == at + 3 && tokens[at + 1].kind == Kind::Number;
     let sure = tokens[at].span.of(text).starts_with(':');
-    let alone = !tokens[at + 1..].iter().any(|t| t.kind.is_relation() && t.kind != Kind::In);
+    // a relation below a maximum is its own
+    let mut depth = 0_i32;
+    let alone = !tokens[at + 1..].iter().any(|t| {
+        depth += i32::from(t.kind.opens()) - i32::from(t.kind.closes());
+        depth == 0 && t.kind.is_relation() && t.kind != Kind::In
+    });
     name && tokens[at].kind == Kind::Equal && alone && (sure || !number)
 }
 
@@ -121,6 +138,38 @@ pub(crate) fn is_sentence(line: &str) -> bool {
     let named = matches!(&*opener, "let" | "where") && rest.contains(['_', '^']);
     let words = words_of(&outside);
     words >= FEWEST && (!related || named || words >= 6)
+}
+
+/// Whether a line begins with a heading, as in `\\textbf{Variables.} $x_i = 1$ if …`, alone or
+/// before words.
+fn is_headed(line: &str) -> bool {
+    let Some((rest, named)) = behind_heading(line) else { return false };
+    let outside: String = rest.split('$').step_by(2).collect::<Vec<_>>().join(" ");
+    let related = outside.chars().any(|c| table::sign(c).is_some_and(Kind::is_relation));
+    let alone = named && rest.trim().is_empty();
+    alone || is_sentence(rest) || words_of(&outside) >= FEWEST && !related
+}
+
+/// What follows `\\noindent` and `\\textbf{…}` at the start of a line, and whether a heading in
+/// words is among them.
+fn behind_heading(line: &str) -> Option<(&str, bool)> {
+    const SPACING: [&str; 5] = ["\\noindent", "\\smallskip", "\\medskip", "\\bigskip", "\\item"];
+    const WORDS: [&str; 4] = ["\\textbf{", "\\textit{", "\\emph{", "\\paragraph{"];
+    let (mut rest, mut found, mut named) = (line.trim_start(), false, false);
+    loop {
+        if let Some(after) = SPACING.iter().find_map(|one| rest.strip_prefix(one)) {
+            (rest, found) = (after.trim_start(), true);
+            continue;
+        }
+        let inner = WORDS.iter().find_map(|one| rest.strip_prefix(one));
+        let Some((inner, after)) = inner.and_then(|inner| inner.split_once('}')) else { break };
+        let plain = inner.contains(char::is_alphabetic) && !inner.contains(['{', '$', '\\']);
+        if !plain || phrase(inner).is_some() {
+            break;
+        }
+        (rest, found, named) = (after.trim_start(), true, true);
+    }
+    found.then_some((rest, named))
 }
 
 /// Whether two spaces or a tab stand between words, as before a remark.

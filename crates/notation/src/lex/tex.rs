@@ -53,9 +53,15 @@ impl Lexer<'_> {
         let next = rest.trim_start_matches([' ', '\t']).chars().next();
         let set = next
             .is_some_and(|c| c == '{' || self.environment == 0 && (c == '(' || c.is_uppercase()));
-        let behind = self.tokens.last().is_some_and(|t| {
-            matches!(t.kind, Kind::Word | Kind::RightParen | Kind::RightBrace | Kind::EmptySet)
-        });
+        let last = |back: usize| self.tokens.iter().rev().nth(back).map(|t| t.kind);
+        let behind = match last(0) {
+            // V_0 \ {r}
+            Some(Kind::Number) => last(1) == Some(Kind::Underscore),
+            Some(kind) => {
+                matches!(kind, Kind::Word | Kind::RightParen | Kind::RightBrace | Kind::EmptySet)
+            }
+            None => false,
+        };
         if set && behind {
             self.take(Kind::Difference, 1);
         } else {

@@ -341,7 +341,7 @@ impl<'t> Printer<'t> {
 
     fn name(&self, name: &Name) -> Element {
         let whole = self.whole.contains(name.text.as_str());
-        let Decorated { base, below, above } = decorated(&name.text, whole);
+        let Decorated { base, below, above } = decorated(name.shown(), whole);
         let mut under: Vec<Element> = below.into_iter().collect();
         if !name.indices.is_empty() {
             if !under.is_empty() {

@@ -62,7 +62,7 @@ impl Parser<'_> {
                     let Some((text, indexed, after)) = self.name_at(i) else { return false };
                     // one is enough, and looking for an index walks back
                     if !found {
-                        found = indexed && !self.is_declared(text) && !self.is_index(text, i);
+                        found = indexed && !self.is_indexed_datum(text) && !self.is_index(text, i);
                     }
                     if found && depth == 0 && self.number_word_at(after) {
                         return true;
@@ -112,6 +112,12 @@ impl Parser<'_> {
     fn is_declared(&self, name: &str) -> bool {
         let plain = name.rsplit([' ', '{']).next().unwrap_or(name).trim_end_matches('}');
         self.declared.contains(name) || self.declared.contains(plain)
+    }
+
+    /// Whether a name is declared with indices; `I_{it}` beside a set `I` is another name.
+    fn is_indexed_datum(&self, name: &str) -> bool {
+        let alone = self.declared.contains(name) && !self.declared.contains(&format!("{name}_"));
+        !alone && self.is_declared(name)
     }
 
     /// A name at token `at`, whether it carries something, and the token after it.

@@ -1,6 +1,6 @@
 //! Title, parts, and where each line ends.
 
-use super::{Parser, Surroundings, superset};
+use super::{Parser, Surroundings, graph, superset};
 use crate::diagnostic::syntax as message;
 use crate::latex::unescaped;
 use crate::lex::lex;
@@ -49,11 +49,12 @@ pub(crate) fn is_title(line: &str) -> bool {
     let tokens = lex(line, 0);
     let opens_part =
         |kind: T| kind.is_part() || matches!(kind, T::SuchThat | T::Min | T::Max | T::Text);
-    // "Max cut" and "Min-cost flow" are titles, "max z" is none
+    // "Max cut", "Min-cost flow" and "Max-min dispersion" are titles, "max z" is none
     let sense = tokens.first().is_some_and(|t| matches!(t.kind, T::Min | T::Max));
     let words = |t: &crate::lex::token::Token| {
-        matches!(t.kind, T::Word | T::Minus | T::Comma | T::End | T::LeftParen | T::RightParen)
-            && t.text.chars().count() != 1
+        let mark = matches!(t.kind, T::Minus | T::Comma | T::LeftParen | T::RightParen);
+        let word = matches!(t.kind, T::Word | T::End | T::Min | T::Max);
+        (mark || word) && t.text.chars().count() != 1
     };
     let named = sense && tokens.len() > 2 && tokens[1..].iter().all(words);
     let first_opens = !named && tokens.first().is_some_and(|t| opens_part(t.kind));
@@ -280,6 +281,11 @@ impl Parser<'_> {
                 }
                 let mut line = self.data_line().ok()?;
                 line.remark = self.remark(after);
+                let known = |name: &str| self.declared.contains(name);
+                if graph::put(&mut tree.data, &line, known) {
+                    tree.data.iter().rev().take(2).for_each(|line| self.note(line));
+                    return Some(());
+                }
                 self.note(&line);
                 if !superset::put(&mut tree.data, &line) {
                     tree.data.push(line);
@@ -288,6 +294,11 @@ impl Parser<'_> {
             Part::Definitions => {
                 let mut line = self.data_line().ok()?;
                 line.remark = self.remark(after);
+                let known = |name: &str| self.declared.contains(name);
+                if graph::put(&mut tree.data, &line, known) {
+                    tree.data.iter().rev().take(2).for_each(|line| self.note(line));
+                    return Some(());
+                }
                 self.note(&line);
                 tree.definitions.push(line);
             }
@@ -323,7 +334,11 @@ impl Parser<'_> {
         let mut work: Vec<&Expression> = line.left.iter().collect();
         while let Some(expression) = work.pop() {
             match &expression.kind {
-                Kind::Name(name) => {
+                Kind::Name(name) | Kind::Call(name, _) => {
+                    let bare = name.indices.is_empty() && name.superscript.is_none();
+                    if !bare || matches!(expression.kind, Kind::Call(..)) {
+                        self.declared.insert(format!("{}_", name.text));
+                    }
                     self.declared.insert(name.text.clone());
                 }
                 Kind::Interval(a, b) => work.extend([a.as_ref(), b.as_ref()]),

@@ -157,9 +157,28 @@ impl Parser<'_> {
 
     /// Takes the label off the end of the line.
     pub(super) fn label(&mut self) -> Option<Label> {
+        let leading = self.leading_label();
         let tagged = self.tagged_label();
         let written = self.bracketed_label();
-        tagged.or(written)
+        tagged.or(written).or(leading)
+    }
+
+    /// `(3)` or `(3a)` before a row, set apart from it: nobody begins a row with such a factor.
+    fn leading_label(&mut self) -> Option<Label> {
+        if self.peek() != T::LeftParen || self.ahead(1) != T::Number {
+            return None;
+        }
+        let letter = self.ahead(2) == T::Word && self.tokens[self.at + 2].text.len() == 1;
+        let close = self.at + 2 + usize::from(letter);
+        let next = self.tokens.get(close + 1).filter(|_| close + 1 < self.end)?;
+        if self.tokens[close].kind != T::RightParen || !next.gap.has(Gap::SPACE) {
+            return None;
+        }
+        let first = self.tokens[self.at].span;
+        let span = first.to(self.tokens[close].span);
+        let text = span.of(self.text).trim_matches(['(', ')', ' ']).to_owned();
+        self.at = close + 1;
+        Some(Label { text, span })
     }
 
     /// Moves the tags behind the end of the line; the last one is the label.

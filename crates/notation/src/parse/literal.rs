@@ -1,20 +1,28 @@
-//! `V_0` beside `V`: a datum whose index is a number is a name of its own.
+//! `V_0` beside `V`, `c^1_{ij}` beside `c^2_{ij}`: a datum with a number for an index, or raised,
+//! is a name of its own.
 
 use std::collections::BTreeSet;
 
-use crate::syntax::{Clause, Expression, Formulation, Kind, Line, each_name};
+use crate::syntax::{Expression, Formulation, Kind, each_name, each_outermost};
 
-/// Joins the index to the name where a line of data or definitions declares one like that, and
-/// none declares the same name with indices that run. `O(tree)`.
+/// Names with the numbers that belong to them.
+type Own = BTreeSet<(String, String)>;
+
+/// Joins a number to its name where a line of data or definitions declares one like that: an
+/// index where none declares the same name with indices that run, what is raised everywhere.
+/// `O(tree)`.
 pub(super) fn joined(tree: &mut Formulation) {
-    let mut own = BTreeSet::new();
+    let (mut below, mut above) = (Own::new(), Own::new());
     let mut running = BTreeSet::new();
     for line in tree.data.iter().chain(&tree.definitions) {
         for expression in &line.left {
             let Kind::Name(name) = &expression.kind else { continue };
-            match literal(&name.indices) {
+            if let Some(raised) = name.superscript.as_deref().and_then(whole) {
+                above.insert((name.text.clone(), raised));
+            }
+            match only(&name.indices) {
                 Some(index) if line.clauses.is_empty() && name.superscript.is_none() => {
-                    own.insert((name.text.clone(), index));
+                    below.insert((name.text.clone(), index));
                 }
                 _ if !name.indices.is_empty() => {
                     running.insert(name.text.clone());
@@ -23,41 +31,38 @@ pub(super) fn joined(tree: &mut Formulation) {
             }
         }
     }
-    own.retain(|(name, _)| !running.contains(name));
-    if !own.is_empty() {
-        every(tree, &own);
+    below.retain(|(name, _)| !running.contains(name));
+    if below.is_empty() && above.is_empty() {
+        return;
     }
-}
-
-/// The only index, where it is a whole number.
-fn literal(indices: &[Expression]) -> Option<String> {
-    let [only] = indices else { return None };
-    let Kind::Number(value) = &only.kind else { return None };
-    (value.is_int() && *value >= model::Number::ZERO).then(|| crate::print::number(value))
-}
-
-fn every(tree: &mut Formulation, own: &BTreeSet<(String, String)>) {
-    let mut join = |expression: &mut Expression| {
+    each_outermost(tree, &mut |expression| {
         each_name(expression, &mut |name| {
-            if let Some(index) = literal(&name.indices)
-                && own.contains(&(name.text.clone(), index.clone()))
+            let own =
+                |set: &Own, number: &String| set.contains(&(name.text.clone(), number.clone()));
+            if let Some(raised) = name.superscript.as_deref().and_then(whole)
+                && own(&above, &raised)
+            {
+                name.text = format!("{}^{raised}", name.text);
+                name.superscript = None;
+            } else if let Some(index) = only(&name.indices)
+                && own(&below, &index)
             {
                 name.text = format!("{}_{index}", name.text);
                 name.indices.clear();
             }
         });
-    };
-    let clause = |clause: &mut Clause, join: &mut dyn FnMut(&mut Expression)| {
-        clause.items.iter_mut().chain(&mut clause.such_that).for_each(join);
-    };
-    let line = |line: &mut Line, join: &mut dyn FnMut(&mut Expression)| {
-        line.left.iter_mut().for_each(&mut *join);
-        line.links.iter_mut().for_each(|(_, operand)| join(operand));
-        line.clauses.iter_mut().for_each(|one| clause(one, join));
-    };
-    if let Some(objective) = &mut tree.objective {
-        join(&mut objective.expression);
-    }
-    let lines = tree.data.iter_mut().chain(&mut tree.definitions).chain(&mut tree.statements);
-    lines.for_each(|one| line(one, &mut join));
+    });
+}
+
+/// The only index, where it is a whole number.
+fn only(indices: &[Expression]) -> Option<String> {
+    let [only] = indices else { return None };
+    whole(only)
+}
+
+/// A whole number as it is written behind `_` or `^`.
+fn whole(expression: &Expression) -> Option<String> {
+    let Kind::Number(value) = &expression.kind else { return None };
+    let whole = value.is_int() && *value >= model::Number::ZERO;
+    whole.then(|| crate::print::number(value))
 }

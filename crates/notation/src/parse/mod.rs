@@ -1,11 +1,14 @@
 //! The parser: tokens to a tree, by recursive descent. It never fails: a line that cannot be
 //! read gives a diagnostic with its place and is skipped to its end.
 
+mod called;
 mod cases;
 mod compound;
 mod copied;
 mod document;
 mod expression;
+mod graph;
+mod implied;
 mod line;
 mod literal;
 mod name;
@@ -15,6 +18,7 @@ mod plain_sum;
 mod primary;
 mod quantifier;
 mod superset;
+mod twofold;
 mod words;
 
 pub(crate) use compound::needed;
@@ -67,7 +71,10 @@ pub fn parse(text: &str) -> Parse {
     };
     let mut tree = parser.document();
     tree.title = title;
+    called::settled(&mut tree);
     literal::joined(&mut tree);
+    twofold::parted(&mut tree);
+    parser.imply_quantifiers(&mut tree);
     tree.complete = !parser.diagnostics.iter().any(Diagnostic::is_error);
     Parse { tree, diagnostics: tidy(parser.diagnostics) }
 }

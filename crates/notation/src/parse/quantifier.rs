@@ -89,7 +89,9 @@ impl Parser<'_> {
     /// Items, then perhaps a colon and conditions.
     pub(super) fn clause(&mut self) -> Read<Clause> {
         let start = self.here();
-        self.eat(T::ForAll);
+        if self.eat(T::ForAll) || self.at > 0 && self.tokens[self.at - 1].kind == T::ForAll {
+            self.skip_nouns();
+        }
         let mut distinct = self.eat_distinct();
         let items = self.items()?;
         distinct |= self.eat_distinct();
@@ -144,6 +146,28 @@ impl Parser<'_> {
     /// Whether `i =` or `i ∈` stands so many tokens ahead.
     fn at_binder(&self, by: usize) -> bool {
         self.ahead(by) == T::Word && matches!(self.ahead(by + 1), T::Equal | T::In)
+    }
+
+    /// Passes over the words of `for each ground arc g ∈ G`, `for every pair (i,j) ∈ A`.
+    fn skip_nouns(&mut self) {
+        let noun = |token: &crate::lex::token::Token| {
+            let plain = token.text.len() > 2 && token.text.chars().all(char::is_lowercase);
+            plain && !self.declared.contains(&token.text)
+        };
+        let rest = &self.tokens[self.at..self.end];
+        let words = rest.iter().take_while(|t| t.kind == T::Word).count();
+        let nouns = rest[..words].iter().take_while(|t| noun(t)).count();
+        let next = |i: usize| rest.get(i).map_or(T::End, |t| t.kind);
+        let pair =
+            nouns == words && next(words) == T::LeftParen && { rest[words].gap.has(Gap::SPACE) };
+        let single = nouns + 1 == words && matches!(next(words), T::In | T::Comma | T::Equal);
+        if nouns > 0
+            && (pair || single)
+            && rest[0].text != "distinct"
+            && rest[0].text != "different"
+        {
+            self.at += nouns;
+        }
     }
 
     fn eat_distinct(&mut self) -> bool {

@@ -51,6 +51,9 @@ mod editing;
 #[path = "page/studies.rs"]
 mod studies;
 
+#[path = "page/linearising.rs"]
+mod linearising;
+
 #[path = "page/typeset.rs"]
 mod typeset;
 

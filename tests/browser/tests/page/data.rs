@@ -20,6 +20,18 @@ Birchley\tAbbey\t92
 Birchley\tBarrow\t21
 ";
 
+/// The same without the drive from Birchley to Barrow, and a datum of another shape beside it.
+const GAPS: &str = "\
+depot\tpermit
+Ashford\t62
+Birchley\t55
+
+depot\tvillage\thaul
+Ashford\tAbbey\t31
+Ashford\tBarrow\t24
+Birchley\tAbbey\t92
+";
+
 const TWO: &str = "hullward = 1
 title = \"Two days\"
 
@@ -86,6 +98,33 @@ async fn foreign_headings_are_mapped_in_the_table() -> Outcome<()> {
         assert_eq!(value(browser, "A", "root-bound").await?, Some(117.0));
         browser.still("[data-testid=undo]").await?.click().await?;
         status(browser, "A", "could not be run").await
+    })
+    .await
+}
+
+/// A datum of the wrong shape names the `data` line, and one that lacks a value the cell as well.
+#[tokio::test(flavor = "multi_thread")]
+async fn a_wrong_shape_and_a_missing_cell_name_their_line() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        let own = "hullward = 1\n[instance]\ntext = '''\n".to_owned()
+            + GAPS
+            + "'''\n[[rival]]\nfrom = \"ufl/split\"\n";
+        paste(browser, &own).await?;
+        let failure = "[data-lane=A] [data-testid=failure]";
+        holds(browser, failure, "rival line 7").await?;
+        holds(browser, failure, "c[Birchley, Barrow] (a cell of haul)").await?;
+        let choice = browser.select(&format!("{} select", line("c"))).await?;
+        choice.select_by_value("permit").await?;
+        holds(browser, &line("c"), "line 7 of A: permit is a table, which does not fit").await?;
+        holds(browser, failure, "c (as permit) is indexed by 2").await?;
+        // With the cell that lacked, it runs: Ashford alone, 62 + 31 + 24.
+        let choice = browser.select(&format!("{} select", line("c"))).await?;
+        choice.select_by_value("haul").await?;
+        holds(browser, failure, "c[Birchley, Barrow]").await?;
+        paste(browser, &format!("{GAPS}Birchley\tBarrow\t21\n")).await?;
+        status(browser, "A", "root solved").await?;
+        assert_eq!(value(browser, "A", "root-bound").await?, Some(117.0));
+        Ok(())
     })
     .await
 }

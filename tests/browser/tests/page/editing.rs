@@ -144,6 +144,39 @@ async fn what_is_wrong_is_underlined_and_mended_and_touches_no_lane() -> Outcome
 }
 
 #[tokio::test(flavor = "multi_thread")]
+async fn what_is_typed_has_its_colours() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        status(browser, "A", "root solved").await?;
+        open(browser, "A").await?;
+        let text = "data\n  V  stops # of the 𝒳 round\n  q_i = 2  ∀ i ∈ V\nminimise\n  Σ_{i ∈ V} q_i x_i\n\
+            subject to\n  x_i ≥ 1  ∀ i ∈ V  (each)\n  x_i ≥ 0  ∀ i ∈ V\n";
+        write(browser, "A", text, ("notation-state", "No errors")).await?;
+        let colours = "
+            const of = (kind) => [...document.querySelectorAll(`.script .${kind}`)];
+            const words = (kind) => of(kind).map((one) => one.textContent.trim()).join(' ');
+            const plain = getComputedStyle(document.querySelector('.script pre')).color;
+            const kinds = ['part', 'datum', 'variable', 'label', 'comment'];
+            const told = (kind) => {
+                const style = getComputedStyle(of(kind)[0]);
+                return style.color !== plain || style.fontWeight > 400 || style.fontStyle !== 'normal';
+            };
+            return kinds.map((kind) => words(kind) + (of(kind).length && told(kind) ? '' : '!'));
+        ";
+        let shown = browser.script(colours).await?;
+        let shown: Vec<&str> = shown.as_array().into_iter().flatten().filter_map(|w| w.as_str()).collect();
+        let [parts, data, variables, labels, comments] = shown[..] else {
+            return Err(format!("{shown:?}").into());
+        };
+        assert_eq!(parts, "data minimise subject to");
+        assert!(data.split(' ').all(|word| matches!(word, "V" | "q")), "{data}");
+        assert!(!variables.is_empty() && variables.split(' ').all(|word| word == "x"), "{variables}");
+        assert_eq!((labels, comments), ("(each)", "# of the 𝒳 round"));
+        Ok(())
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
 async fn an_own_rival_is_pasted_from_a_paper_and_runs() -> Outcome<()> {
     visit(Source::File, async |browser| {
         paste(browser, TRIANGLE).await?;

@@ -1,7 +1,7 @@
 //! One rival from its text to the end of its search.
 //!
 //! ```text
-//! Begin → Read → Expanding → Expanded → Root → Waiting ⇄ Running → Explaining → Over
+//! Begin → Read → Expanding → Expanded → Making → Root → Waiting ⇄ Running → Explaining → Over
 //! ```
 //!
 //! A search that found no plan though its relaxation has a point is explained: which families
@@ -13,10 +13,13 @@
 use std::rc::Rc;
 
 use model::Model;
-use record::message::{LaneJob, Progress, Reply, Request};
+use record::event::Log;
+use record::ground::Ground;
+use record::log::KeptEvents;
+use record::message::{LaneJob, LogJob, Progress, Reply, Request};
 use record::results::{ErrorReport, SearchReport, Status};
 use record::scenario::Act;
-use tree::{Audit, Conflict, ConflictLimits, NodeId, Search};
+use tree::{Audit, Conflict, ConflictLimits, Making, NodeId, Search};
 
 use crate::family::suggestions;
 use crate::fault::fault;
@@ -29,6 +32,24 @@ use crate::readings::Readings;
 /// A word on how far the work is comes at most once in so many non-zeros touched.
 const PROGRESS_EVERY: u64 = 1 << 20;
 
+/// How far a search is to go.
+#[derive(Debug, Clone, Copy)]
+enum Goal {
+    /// To the end, or so many nodes on.
+    Nodes(Option<u32>),
+    /// To the next plan that is better than all before.
+    Plan,
+}
+
+impl Goal {
+    fn set(self, search: &mut Search) {
+        match self {
+            Self::Nodes(nodes) => search.run(nodes),
+            Self::Plan => search.run_to_a_plan(),
+        }
+    }
+}
+
 /// How far a lane is.
 #[derive(Debug)]
 enum Stage {
@@ -36,6 +57,7 @@ enum Stage {
     Read,
     Expanding(Box<Loading>),
     Expanded(Box<Loaded>),
+    Making(Box<(Loaded, Making)>),
     Root(Box<Solver>),
     Waiting(Box<Solver>),
     Running(Box<Solver>),
@@ -68,18 +90,34 @@ pub(crate) struct Lane {
     job: LaneJob,
     stage: Stage,
     /// A run that was asked for before the root was solved.
-    asked: Option<Option<u32>>,
+    asked: Option<Goal>,
+    /// Everything that happened.
+    log: KeptEvents,
 }
 
 impl Lane {
     /// A lane that has not begun.
     pub(crate) fn new(job: LaneJob) -> Self {
-        Self { job, stage: Stage::Begin, asked: None }
+        Self { job, stage: Stage::Begin, asked: None, log: KeptEvents::default() }
     }
 
     /// Whether [`Self::advance`] has something to do.
     pub(crate) fn is_busy(&self) -> bool {
         !matches!(self.stage, Stage::Waiting(_) | Stage::Over(_))
+    }
+
+    /// Non-zeros touched by what it is at.
+    pub(crate) fn ticks(&self) -> u64 {
+        match &self.stage {
+            Stage::Making(begun) => begun.1.ticks(),
+            Stage::Root(solver) | Stage::Waiting(solver) | Stage::Running(solver) => {
+                solver.search.work().ticks
+            }
+            Stage::Explaining(_, conflict) => conflict.ticks(),
+            Stage::Auditing(_, audit) => audit.ticks(),
+            Stage::Over(Some(solver)) => solver.search.work().ticks,
+            _ => 0,
+        }
     }
 
     /// Works for about `ticks`.
@@ -95,7 +133,15 @@ impl Lane {
                 Err(error) => self.fail(error, outbox),
             },
             Stage::Expanding(loading) => self.expand(loading, ticks, outbox),
-            Stage::Expanded(loaded) => self.begin_search(*loaded, outbox),
+            Stage::Expanded(loaded) => {
+                let settings = map::settings(&self.job.settings, self.job.seed);
+                let making = Making::new(Rc::clone(&loaded.model), settings);
+                Stage::Making(Box::new((*loaded, making)))
+            }
+            Stage::Making(mut begun) => match begun.1.advance(ticks) {
+                Some(search) => self.begin_search(begun.0, search, outbox),
+                None => Stage::Making(begun),
+            },
             Stage::Root(solver) => self.solve(solver, ticks, outbox, Stage::Root),
             Stage::Running(solver) => self.solve(solver, ticks, outbox, Stage::Running),
             Stage::Explaining(solver, conflict) => self.explain(solver, conflict, ticks, outbox),
@@ -107,13 +153,15 @@ impl Lane {
     /// Carries out a request about this rival.
     pub(crate) fn act(&mut self, request: &Request, outbox: &mut Outbox) {
         match request {
-            Request::Run { nodes } => self.run(*nodes),
+            Request::Run { nodes } => self.run(Goal::Nodes(*nodes)),
+            Request::RunToPlan => self.run(Goal::Plan),
             Request::Pause => self.pause(outbox),
             Request::Stop => self.stop(outbox),
             Request::Inspect(node) => self.inspect(NodeId(node.0), outbox),
             Request::Act(act) => self.steer(act, outbox),
             Request::Relaxation => self.hand_over_root(outbox),
             Request::Evidence => self.hand_over_evidence(outbox),
+            Request::Log(job) => self.hand_over_log(job, outbox),
             Request::Audit => self.begin_audit(outbox),
             _ => {}
         }
@@ -132,11 +180,9 @@ impl Lane {
         }
     }
 
-    fn begin_search(&mut self, loaded: Loaded, outbox: &mut Outbox) -> Stage {
+    fn begin_search(&mut self, loaded: Loaded, mut search: Search, outbox: &mut Outbox) -> Stage {
         let Loaded { title, model, mut complaints, stops } = loaded;
         complaints.extend(map::complaints(&self.job.settings, &model));
-        let settings = map::settings(&self.job.settings, self.job.seed);
-        let mut search = Search::new(Rc::clone(&model), settings);
         let report = map::rival_report(&model, search.separators(), &title, complaints);
         outbox.push(self.job.run, Reply::Understood(Box::new(report)));
         for act in &self.job.rival.acts {
@@ -187,8 +233,8 @@ impl Lane {
     /// After the root: on when that was asked for, else wait.
     fn rest(&mut self, mut solver: Box<Solver>) -> Stage {
         match self.asked.take() {
-            Some(nodes) => {
-                solver.search.run(nodes);
+            Some(goal) => {
+                goal.set(&mut solver.search);
                 Stage::Running(solver)
             }
             None => Stage::Waiting(solver),
@@ -289,9 +335,10 @@ impl Lane {
     }
 
     /// Sends what happened, and now and then how far the work is.
-    fn tell(&self, solver: &mut Solver, outbox: &mut Outbox) {
+    fn tell(&mut self, solver: &mut Solver, outbox: &mut Outbox) {
         let events: Vec<_> = solver.search.take_events().into_iter().map(map::event).collect();
         if !events.is_empty() {
+            self.log.extend(&events);
             outbox.push(self.job.run, Reply::Batch(events));
         }
         self.tell_acted(solver, outbox);
@@ -339,7 +386,13 @@ impl Lane {
             }
             Stage::Over(Some(mut solver)) => {
                 self.hand_over(act, &mut solver, outbox);
-                Stage::Over(Some(solver))
+                // An act that raises the limit at which it ended lets the search go on.
+                if solver.search.is_over() {
+                    Stage::Over(Some(solver))
+                } else {
+                    solver.search.run(None);
+                    Stage::Running(solver)
+                }
             }
             earlier => {
                 let acted = map::refused(act, 0, false, "there is no search yet".to_owned());
@@ -361,21 +414,21 @@ impl Lane {
         self.tell_acted(solver, outbox);
     }
 
-    fn run(&mut self, nodes: Option<u32>) {
+    fn run(&mut self, goal: Goal) {
         let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
         self.stage = match stage {
             Stage::Waiting(mut solver) if solver.search.root().is_none() => {
-                self.asked = Some(nodes);
+                self.asked = Some(goal);
                 solver.search.run(None);
                 Stage::Root(solver)
             }
             Stage::Waiting(mut solver) | Stage::Running(mut solver) => {
-                solver.search.run(nodes);
+                goal.set(&mut solver.search);
                 Stage::Running(solver)
             }
             over @ (Stage::Explaining(..) | Stage::Auditing(..) | Stage::Over(_)) => over,
             earlier => {
-                self.asked = Some(nodes);
+                self.asked = Some(goal);
                 earlier
             }
         };
@@ -401,7 +454,11 @@ impl Lane {
                 solver.search.stop();
                 Stage::Running(solver)
             }
-            Stage::Begin | Stage::Read | Stage::Expanding(_) | Stage::Expanded(_) => {
+            Stage::Begin
+            | Stage::Read
+            | Stage::Expanding(_)
+            | Stage::Expanded(_)
+            | Stage::Making(_) => {
                 let report = map::nothing_searched("stopped before its model was made");
                 outbox.push(self.job.run, Reply::Done(Box::new(report)));
                 Stage::Over(None)
@@ -427,6 +484,23 @@ impl Lane {
         let (Stage::Waiting(solver) | Stage::Over(Some(solver))) = &self.stage else { return };
         let evidence = map::evidence(&solver.search);
         outbox.push(self.job.run, Reply::Evidence(Box::new(evidence)));
+    }
+
+    /// The log so far, as the bytes of its file.
+    fn hand_over_log(&self, job: &LogJob, outbox: &mut Outbox) {
+        let log = match &self.stage {
+            Stage::Waiting(solver) | Stage::Over(Some(solver)) => {
+                let LogJob { scenario, instance, rival } = job.clone();
+                let evidence = map::evidence(&solver.search);
+                let ground = Some(Ground { scenario, instance, rival, evidence });
+                let version = record::log::version(ground.as_ref());
+                let (engine, events) = (crate::VERSION.to_owned(), self.log.events());
+                record::log::encode(&Log { version, engine, events, ground })
+                    .map_err(|error| error.to_string())
+            }
+            _ => Err("the search has not come to a rest".to_owned()),
+        };
+        outbox.push(self.job.run, Reply::Log(log));
     }
 
     fn inspect(&mut self, node: NodeId, outbox: &mut Outbox) {

@@ -24,6 +24,7 @@ mod dispatch;
 mod explain;
 mod family;
 mod fault;
+mod gather;
 mod handover;
 mod lane;
 mod load;

@@ -269,6 +269,7 @@ impl Drive {
                 | Reply::Written(_)
                 | Reply::Studied(_)
                 | Reply::Audited(_)
+                | Reply::Log(_)
                 | Reply::Bound(_) => {}
             }
         }

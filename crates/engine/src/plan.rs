@@ -13,10 +13,10 @@ use std::collections::BTreeMap;
 
 use model::{ColumnId, FamilyState, LabelId, Model, Number, RowId, nearest_f64};
 use record::results::PlanReport;
-use separate::{Membership, Separator};
+use separate::{Membership, Separator, Violated};
 use tree::{SuggestedBy, Suggestion};
 
-/// Rows that are named at most.
+/// Lines that were not understood and are told at most.
 const MOST: usize = 20;
 
 /// A plan as it was read.
@@ -121,6 +121,7 @@ impl Plan {
     pub(crate) fn report(&self, model: &Model, search: &tree::Search) -> PlanReport {
         let value = search.given_plan().and_then(|given| given.value);
         let mut remarks = self.unread.clone();
+        let mut count = 0;
         if value.is_none() {
             let broken = self.broken(model, search.separators());
             if broken.is_empty() {
@@ -134,9 +135,10 @@ impl Plan {
                     "It was not tried: the search ended at its root".to_owned()
                 });
             }
+            count = u32::try_from(broken.len()).unwrap_or(u32::MAX);
             remarks.extend(broken);
         }
-        PlanReport { feasible: value.is_some(), value, remarks }
+        PlanReport { feasible: value.is_some(), value, remarks, broken: count }
     }
 
     /// The bounds, rows and families over subsets that the given values break by themselves.
@@ -157,12 +159,7 @@ impl Plan {
         }
         let rows = (0..model.row_count()).map(RowId::from_index);
         all.extend(rows.filter_map(|row| self.row(model, row)));
-        all.extend(separators.iter().filter_map(|separator| self.member(model, separator)));
-        let more = all.len().saturating_sub(MOST);
-        all.truncate(MOST);
-        if more > 0 {
-            all.push(format!("and {more} more rows are broken"));
-        }
+        all.extend(separators.iter().flat_map(|separator| self.members(model, separator)));
         all
     }
 
@@ -189,20 +186,31 @@ impl Plan {
         Some(format!("{name}: the left side is {}, and {asked} is asked", nearest_f64(&sum)))
     }
 
-    /// A member of a family over subsets, where all its columns are given.
-    fn member(&self, model: &Model, separator: &Separator) -> Option<String> {
+    /// The members of a family over subsets that are broken and whose columns are all given: those
+    /// that a round of separation finds, or the one that the exact check does.
+    fn members(&self, model: &Model, separator: &Separator) -> Vec<String> {
         let x: Vec<f64> = (0..model.columns().len())
             .map(|j| self.values.get(&ColumnId::from_index(j)).copied().unwrap_or(0.0))
             .collect();
-        let Membership::Violated(violated) = separator.membership(&x) else { return None };
-        let given = violated.row.entries.iter().all(|(column, _)| self.values.contains_key(column));
-        let family = model.subset_family(violated.family).family;
-        let name = &model.families()[family.index()].name;
-        let labels: Vec<&str> =
-            violated.subset.iter().map(|&label| model.labels().name(label)).collect();
-        given.then(|| {
-            let (set, by) = (labels.join(", "), violated.violation);
-            format!("{name} for the set {{{set}}} is broken by {by}")
-        })
+        let Membership::Violated(first) = separator.membership(&x) else { return Vec::new() };
+        let mut round = separator.clone();
+        round.start(&x);
+        while round.advance(u64::MAX) == separate::Progress::Working {}
+        let mut found = round.take();
+        if found.is_empty() {
+            found.push(first);
+        }
+        let given = |member: &Violated| {
+            member.row.entries.iter().all(|(column, _)| self.values.contains_key(column))
+        };
+        found.iter().filter(|member| given(member)).map(|member| told(model, member)).collect()
     }
+}
+
+/// A member that is broken, in words.
+fn told(model: &Model, member: &Violated) -> String {
+    let family = model.subset_family(member.family).family;
+    let name = &model.families()[family.index()].name;
+    let labels: Vec<&str> = member.subset.iter().map(|&label| model.labels().name(label)).collect();
+    format!("{name} for the set {{{}}} is broken by {}", labels.join(", "), member.violation)
 }

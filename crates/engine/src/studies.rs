@@ -1,15 +1,11 @@
 //! Studies of a scenario: each is a plan that the scenario holds, run in slices over all rivals on
 //! one instance.
 
-use std::rc::Rc;
-
-use record::results::ErrorReport;
-use record::scenario::{Field, Rival, Role, Scenario, Study, letter};
+use record::scenario::{Field, Scenario, Study};
 use record::study::Report;
-use study::{Plan, Running, Source, Subject};
+use study::{Plan, Running, Subject};
 
-use crate::load::{Loaded, formulation, load, states};
-use crate::readings::Readings;
+use crate::gather::{Gathering, gathered_at_once};
 
 /// The kinds of study there are.
 pub const KINDS: [&str; 11] = [
@@ -29,7 +25,25 @@ pub const KINDS: [&str; 11] = [
 /// A study on its way.
 #[derive(Debug)]
 pub struct StudyRun {
-    running: Running<Vec<Report>>,
+    stage: Stage,
+}
+
+/// How far it is.
+#[derive(Debug)]
+enum Stage {
+    /// Its rivals become models.
+    Gathering(Box<Begun>),
+    /// It runs.
+    Running(Running<Vec<Report>>),
+}
+
+/// A study whose rivals become models.
+#[derive(Debug)]
+struct Begun {
+    study: Study,
+    plan: Plan,
+    cell: Option<u32>,
+    gathering: Gathering,
 }
 
 impl StudyRun {
@@ -47,36 +61,61 @@ impl StudyRun {
     }
 
     fn some(scenario: &Scenario, instance: usize, study: &Study, cell: Option<u32>) -> Self {
-        let plan = plan(scenario, study);
-        let subjects = subjects(scenario, instance);
-        let running = match plan {
-            Err(why) => left(study, why),
-            Ok(_) if subjects.is_empty() => left(study, "no rival could be run".to_owned()),
-            Ok(plan) => begun(study, subjects, plan, cell),
+        let stage = match plan(scenario, study) {
+            Err(why) => Stage::Running(left(study, why)),
+            Ok(plan) => Stage::Gathering(Box::new(Begun {
+                study: study.clone(),
+                plan,
+                cell,
+                gathering: Gathering::new(scenario.clone(), instance),
+            })),
         };
-        Self { running }
+        Self { stage }
     }
 
     /// Goes on for about `ticks`; whether it is at its end.
     pub fn advance(&mut self, ticks: u64) -> bool {
-        self.running.advance(ticks)
+        let begun = match &mut self.stage {
+            Stage::Running(running) => return running.advance(ticks),
+            Stage::Gathering(begun) => begun,
+        };
+        if begun.gathering.advance(ticks) {
+            return false;
+        }
+        let subjects = std::mem::take(&mut begun.gathering.subjects);
+        let running = if subjects.is_empty() {
+            left(&begun.study, "no rival could be run".to_owned())
+        } else {
+            self::begun(&begun.study, subjects, begun.plan.clone(), begun.cell)
+        };
+        self.stage = Stage::Running(running);
+        false
     }
 
     /// What came out, once it is at its end.
     pub fn take(&mut self) -> Vec<Report> {
-        self.running.take().unwrap_or_default()
+        match &mut self.stage {
+            Stage::Running(running) => running.take().unwrap_or_default(),
+            Stage::Gathering(_) => Vec::new(),
+        }
     }
 
     /// What is being done, as a clause, and how many models are solved.
     #[must_use]
     pub fn doing(&self) -> (String, u32) {
-        (self.running.doing(), self.running.solved())
+        match &self.stage {
+            Stage::Running(running) => (running.doing(), running.solved()),
+            Stage::Gathering(begun) => (begun.gathering.doing(), 0),
+        }
     }
 
     /// Non-zeros touched so far.
     #[must_use]
     pub fn ticks(&self) -> u64 {
-        self.running.ticks()
+        match &self.stage {
+            Stage::Running(running) => running.ticks(),
+            Stage::Gathering(_) => 0,
+        }
     }
 }
 
@@ -139,7 +178,7 @@ fn begun(
 /// # Errors
 /// A field that a study does not have.
 pub fn cells(scenario: &Scenario, instance: usize) -> Result<Vec<(usize, u32)>, String> {
-    let subjects = subjects(scenario, instance);
+    let subjects = gathered_at_once(scenario, instance);
     let growth = scenario.studies.iter().enumerate().filter(|(_, study)| study.kind == "growth");
     growth
         .map(|(place, study)| Ok((place, study::growth::cells(&subjects, &plan(scenario, study)?))))
@@ -154,44 +193,6 @@ pub fn gathered(growth: record::study::Growth) -> record::study::Growth {
 
 fn unknown(kind: &str) -> String {
     format!("there is no study \"{kind}\"; there are {}", KINDS.join(", "))
-}
-
-/// The rivals that become a model.
-fn subjects(scenario: &Scenario, instance: usize) -> Vec<Subject> {
-    let mut readings = Readings::default();
-    let rivals = scenario.rivals.iter().enumerate();
-    let all =
-        rivals.map(|(place, rival)| subject(scenario, (instance, place), rival, &mut readings));
-    all.filter_map(Result::ok).collect()
-}
-
-fn subject(
-    scenario: &Scenario,
-    (instance, place): (usize, usize),
-    rival: &Rival,
-    readings: &mut Readings,
-) -> Result<Subject, ErrorReport> {
-    let Loaded { title, model, .. } = load(scenario, (instance, place))?;
-    let entry = rival.from.as_deref().and_then(catalogue::find);
-    let relaxation = rival.role == Some(Role::Relaxation)
-        || entry.as_ref().is_some_and(|entry| entry.relaxation);
-    let source = match scenario.instances().nth(instance) {
-        Some(text) if rival.mps.is_none() => {
-            let reading = readings.read(text)?;
-            reading.instance.clone().map(|data| {
-                let (words, _) = formulation(rival)?;
-                Ok(Source {
-                    text: Rc::from(words.as_str()),
-                    instance: Rc::new(data),
-                    bind: text.bind.clone(),
-                    states: states(rival),
-                })
-            })
-        }
-        _ => None,
-    };
-    let source = source.transpose()?;
-    Ok(Subject { letter: letter(place), title, model, entry, relaxation, source })
 }
 
 /// The limits and seeds that a study's fields ask for.

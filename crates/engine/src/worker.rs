@@ -69,6 +69,14 @@ impl Worker {
         busy || !self.requests.is_empty()
     }
 
+    /// Non-zeros touched by what is in hand so far: by its search, its proof or its study.
+    #[must_use]
+    pub fn ticks(&self) -> u64 {
+        let lane = self.lane.as_ref().map_or(0, Lane::ticks);
+        let study = self.study.as_ref().map_or(0, StudyRun::ticks);
+        lane + study + self.proof.as_ref().map_or(0, |proof| proof.ticks())
+    }
+
     /// The replies since the last call, in order.
     pub fn take(&mut self) -> Vec<Envelope> {
         self.outbox.take()
@@ -119,6 +127,8 @@ impl Worker {
             Request::Stop if self.proof.is_some() => self.end_proof(),
             Request::Study(job) => self.begin_study(&job),
             Request::Run { .. }
+            | Request::RunToPlan
+            | Request::Log(_)
             | Request::Pause
             | Request::Stop
             | Request::Inspect(_)

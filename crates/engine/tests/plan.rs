@@ -128,3 +128,28 @@ fn textbook_methods_find_plans_where_they_fit() {
         assert!(found, "{name}: {method} found no plan");
     }
 }
+
+/// However many there are, none is left out, and how many there are is told.
+#[test]
+fn all_rows_of_a_plan_that_breaks_many_are_listed() {
+    let arcs = || NAMES.iter().flat_map(|a| NAMES.iter().map(move |b| (a, b)));
+    let lines: Vec<String> =
+        arcs().filter(|(a, b)| a != b).map(|(a, b)| format!("x[{a}, {b}] = 1")).collect();
+    let told = searched("atsp/labels", &lines.join("\n")).plan.unwrap();
+    // Each stop is left and entered six times.
+    assert_eq!((told.broken, told.remarks.len()), (14, 14), "{told:?}");
+    let lines: Vec<String> =
+        arcs().filter(|(a, b)| a != b).map(|(a, b)| format!("x[{a}, {b}] = 3")).collect();
+    let told = searched("atsp/labels", &lines.join("\n")).plan.unwrap();
+    assert_eq!((told.broken, told.remarks.len()), (42 + 14, 42 + 14), "{told:?}");
+    for (a, b) in arcs().filter(|(a, b)| a != b) {
+        let words = format!("x[{a} → {b}] = 3 is outside 0 to 1");
+        assert!(told.remarks.contains(&words), "{words}");
+    }
+    // Two circles: each of the sets that separation finds is listed.
+    let apart =
+        "Ash: Birch\nBirch: Ash\nCedar: Elm\nElm: Cedar\nFir: Gorse\nGorse: Hazel\nHazel: Fir";
+    let told = searched("atsp/subtours", apart).plan.unwrap();
+    assert!(told.broken >= 2, "{told:?}");
+    assert_eq!(told.remarks.len(), told.broken as usize, "{told:?}");
+}

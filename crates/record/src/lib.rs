@@ -29,6 +29,7 @@ pub mod file;
 pub mod ground;
 pub mod handover;
 pub mod hash;
+mod kept;
 pub mod link;
 pub mod log;
 pub mod message;

@@ -19,6 +19,8 @@ use crate::event::{Event, Log};
 use crate::ground::{Evidence, FoundRow, Ground, Tightening};
 use crate::hash;
 
+pub use crate::kept::KeptEvents;
+
 const HEAD: &[u8; 9] = b"hullwardL";
 
 /// Whether a file's bytes begin as a log does.

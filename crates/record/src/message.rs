@@ -49,6 +49,8 @@ pub enum Request {
         /// Pause after this many further nodes.
         nodes: Option<u32>,
     },
+    /// Search on until a plan is found that is better than all before, or to the end.
+    RunToPlan,
     /// Stand still after the slice in hand. Answered by [`Reply::Paused`].
     Pause,
     /// Give up the run. Answered by [`Reply::Done`].
@@ -64,6 +66,9 @@ pub enum Request {
     Act(Act),
     /// Hand over what the search found on the way. Answered by [`Reply::Evidence`].
     Evidence,
+    /// Hand over the log of a search that stands still or has ended, with what it rests on. Answered
+    /// by [`Reply::Log`].
+    Log(Box<LogJob>),
     /// Prove a search that has ended again, from its branchings. Answered by [`Reply::Progress`]
     /// and [`Reply::Audited`].
     Audit,
@@ -85,6 +90,17 @@ pub struct LaneJob {
     pub settings: Run,
     /// The scenario's seed.
     pub seed: u64,
+}
+
+/// What a log that is handed over says of itself.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct LogJob {
+    /// The text of the scenario that gives the same log.
+    pub scenario: String,
+    /// The instance, by place.
+    pub instance: u32,
+    /// The rival, by place.
+    pub rival: u32,
 }
 
 /// A study to make.
@@ -221,6 +237,8 @@ pub enum Reply {
     Acted(Box<Acted>),
     /// What the search found on the way.
     Evidence(Box<Evidence>),
+    /// The log as the bytes of its file, or why there is none, as a clause.
+    Log(Result<Vec<u8>, String>),
     /// What came of proving the search again.
     Audited(Box<AuditReport>),
     /// The request could not be carried out.

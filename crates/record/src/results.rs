@@ -263,6 +263,12 @@ pub struct NodeWorkReport {
     pub tightened: u64,
     /// Bounds that reduced costs tightened.
     pub fixed: u64,
+    /// Leaves that only the step of the objective closed.
+    #[serde(default)]
+    pub stepped: u32,
+    /// Nodes closed after general cuts were added for them; the root among them.
+    #[serde(default)]
+    pub cut_off: u32,
 }
 
 /// One value of a solution; written in JSON as `["x","Ash","Birch",1.0]`.

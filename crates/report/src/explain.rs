@@ -9,6 +9,8 @@ use crate::number::{count, of, short};
 const NAMED: usize = 6;
 /// So many nodes without a plan are worth a word.
 const MANY: u32 = 1_000;
+/// So many things that are wrong with a plan are told before the others are asked for.
+const TOLD: usize = 20;
 /// So many characters of a name are shown.
 const NAME: usize = 60;
 
@@ -47,7 +49,7 @@ pub fn grown(search: &SearchReport) -> Vec<String> {
         let value = plan.value.map_or_else(String::new, |value| format!(": {}", short(value)));
         let word = if plan.feasible { "is one" } else { "is not taken" };
         all.push(format!("The plan that was given {word}{value}"));
-        all.extend(plan.remarks.iter().cloned());
+        all.extend(plan.remarks.iter().take(TOLD).cloned());
     }
     if let Some(estimate) = &search.estimate {
         let [low, middle, high] = [estimate.low, estimate.middle, estimate.high].map(short);
@@ -57,6 +59,16 @@ pub fn grown(search: &SearchReport) -> Vec<String> {
     }
     all.extend(search.diagnosis.iter().map(|found| found.words.clone()));
     all
+}
+
+/// What else is wrong with a plan that was given: a line that tells how much, and a sentence each;
+/// `None` where [`grown()`] told all.
+#[must_use]
+pub fn further(search: &SearchReport) -> Option<(String, &[String])> {
+    let plan = search.plan.as_ref()?;
+    let rest = plan.remarks.get(TOLD..).filter(|rest| !rest.is_empty())?;
+    let broken = u64::from(plan.broken);
+    Some((format!("It breaks {} in all: show the other {}", of(broken, "row"), rest.len()), rest))
 }
 
 /// Families that cannot hold together, and what is known of the set.

@@ -133,7 +133,7 @@ fn words(state: NodeState) -> &'static str {
 }
 
 /// An act that has not taken effect; one to be replayed knows when.
-#[derive(Debug)]
+#[derive(Debug, Clone)]
 struct Waiting {
     act: Act,
     after: Option<u32>,
@@ -182,9 +182,11 @@ impl Acts {
         self.done.push(Acted { act, after, replayed: asked.is_some(), refused });
     }
 
-    /// Refuses every act that still waits: the search has ended after `nodes`.
-    pub(crate) fn refuse_all(&mut self, nodes: u32) {
-        let replays = std::mem::take(&mut self.replays);
+    /// Refuses every act that still waits: the search has ended after `nodes`. Those to be replayed
+    /// are kept where it may go on.
+    pub(crate) fn refuse_all(&mut self, nodes: u32, goes_on: bool) {
+        let replays =
+            if goes_on { self.replays.clone() } else { std::mem::take(&mut self.replays) };
         let live = std::mem::take(&mut self.live);
         for waiting in replays.into_iter().chain(live) {
             self.tell(waiting, nodes, Some(Refusal::Ended));
@@ -207,13 +209,27 @@ impl Search {
 
     fn wait(&mut self, waiting: Waiting) {
         if matches!(self.state, State::Finished(_)) {
-            self.acts.tell(waiting, self.ledger.nodes, Some(Refusal::Ended));
+            let refused = (!self.reopen(&waiting.act)).then_some(Refusal::Ended);
+            self.acts.tell(waiting, self.ledger.nodes, refused);
             return;
         }
         let Some(after) = waiting.after else { return self.acts.live.push_back(waiting) };
         let earlier = |other: &Waiting| other.after.is_some_and(|other| other <= after);
         let place = self.acts.replays.partition_point(earlier);
         self.acts.replays.insert(place, waiting);
+    }
+
+    /// Lets a search that its limit of nodes has ended go on, where an act allows it more; it stands
+    /// still until [`Self::run`]. A replay raises the limit in the same place, before it is looked at.
+    fn reopen(&mut self, act: &Act) -> bool {
+        let Act::Rule(Rule::Nodes(most)) = act else { return false };
+        let more = most.is_none_or(|most| most > self.ledger.nodes);
+        let reopens = more && self.state == State::Finished(Ending::NodeLimit);
+        if reopens {
+            self.change(&Rule::Nodes(*most));
+            (self.state, self.paused) = (State::Searching, true);
+        }
+        reopens
     }
 
     /// Whether an act made with [`Self::act`] has not taken effect yet.
@@ -270,7 +286,7 @@ impl Search {
             Act::Close { node } => self.close_by_hand(*node),
             Act::Cut { family, subset } => self.cut_by_hand(*family, subset),
             Act::Rule(rule) => {
-                self.change(*rule);
+                self.change(rule);
                 Ok(())
             }
             Act::Stop => {

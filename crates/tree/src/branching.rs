@@ -77,23 +77,29 @@ impl Chooser {
     /// `priority` names variables, first those to be branched on first.
     pub(crate) fn new(model: &Model, priority: &[String]) -> Self {
         let columns = model.columns();
+        let whole =
+            (0..columns.len()).filter(|&j| columns[j].integer).map(ColumnId::from_index).collect();
+        let none = vec![Gain::default(); columns.len()];
+        let mut chooser = Self {
+            whole,
+            rank: Vec::new(),
+            down: none.clone(),
+            up: none,
+            all_down: Gain::default(),
+            all_up: Gain::default(),
+        };
+        chooser.prefer(model, priority);
+        chooser
+    }
+
+    /// Has these variables branched on before all others, in this order. `O(columns)`.
+    pub(crate) fn prefer(&mut self, model: &Model, priority: &[String]) {
         let place = |name: &String| priority.iter().position(|wanted| wanted == name);
         let rank = |variable: model::VariableId| {
             let variable = model.variables().get(variable.index());
             variable.and_then(|v| place(&v.name)).unwrap_or(priority.len())
         };
-        let rank = columns.iter().map(|column| rank(column.variable)).collect();
-        let whole =
-            (0..columns.len()).filter(|&j| columns[j].integer).map(ColumnId::from_index).collect();
-        let none = vec![Gain::default(); columns.len()];
-        Self {
-            whole,
-            rank,
-            down: none.clone(),
-            up: none,
-            all_down: Gain::default(),
-            all_up: Gain::default(),
-        }
+        self.rank = model.columns().iter().map(|column| rank(column.variable)).collect();
     }
 
     /// Notes that a branching that moved a column by `distance` raised the bound by `gain`.

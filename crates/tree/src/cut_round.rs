@@ -2,12 +2,13 @@
 //! cancel a continuous column, and the structures among them, one after the other.
 
 use std::collections::{BTreeMap, BTreeSet};
+use std::rc::Rc;
 
 use lp::Col;
 use model::{ColumnId, Number, Row, nearest_f64};
 use separate::general::{
-    Aggregate, Class, Conflicts, Frame, GeneralCut, Lots, OddCuts, Trips, VariableBounds,
-    complemented, cover, flow_cover, fraction, from_tableau, zero_half,
+    Aggregate, Class, Conflicts, Frame, GeneralCut, Lots, OddCuts, Trips, VariableBounds, ZeroHalf,
+    complemented, cover, flow_cover, fraction, from_tableau,
 };
 
 use crate::branching::is_fractional;
@@ -21,10 +22,20 @@ const MOST_TABLEAU: usize = 50;
 const MOST_ROWS: usize = 400;
 /// Rows that are summed at most.
 const MOST_SUMMED: usize = 4;
+/// Entries of rows that one step gathers.
+const AT_ONCE: u64 = 2_000;
 
 /// What is looked at next.
 #[derive(Debug, Clone, Copy)]
 enum Task {
+    /// The rows from this one on are gathered.
+    Gather(usize),
+    /// A structure of the rows is recognised.
+    Recognise(Class),
+    /// Some more of the conflict graph.
+    Graph,
+    /// What is looked at in the rows is listed.
+    Plan,
     Tableau(ColumnId),
     Row(usize),
     /// A literal of the conflict graph.
@@ -50,77 +61,124 @@ struct Structures {
 #[derive(Debug)]
 pub(crate) struct CutRound {
     wanted: Cuts,
+    whole: Vec<ColumnId>,
+    trip: Option<Rc<RoundTrip>>,
     pub(crate) x: Vec<f64>,
     /// The rows that derivations speak of.
     pub(crate) rows: Vec<Row>,
     /// The rows in which a continuous column stands that is between its bounds.
     of_column: BTreeMap<ColumnId, Vec<usize>>,
     structures: Structures,
+    zero_half: Option<ZeroHalf>,
     tasks: Vec<Task>,
     pub(crate) found: Vec<GeneralCut>,
+    /// The best of them that are not looked at yet, the best last; `None` before they are chosen.
+    pub(crate) queue: Option<Vec<GeneralCut>>,
+    /// Those that are taken, with their numbers.
+    pub(crate) taken: Vec<(usize, GeneralCut)>,
     pub(crate) ticks: u64,
 }
 
 impl CutRound {
-    /// Gathers the rows and structures. `O(non-zeros · log)`, and of the conflict graph
-    /// `O(fractional²)`.
+    /// A round that has looked at nothing. `O(columns)`.
     pub(crate) fn new(
-        relaxation: &Relaxation,
-        frame: &Frame,
         (wanted, whole): (Cuts, &[ColumnId]),
-        trip: Option<&RoundTrip>,
+        trip: Option<&Rc<RoundTrip>>,
         x: &[f64],
     ) -> Self {
-        let count = relaxation.row_count();
-        let rows: Vec<Row> = (0..count).filter_map(|index| relaxation.exact_row(index)).collect();
-        let mut of_column: BTreeMap<ColumnId, Vec<usize>> = BTreeMap::new();
-        for (index, row) in rows.iter().enumerate() {
-            let open =
-                |column: ColumnId| !frame.integer[column.index()] && between(frame, column, x);
-            for (column, _) in row.entries.iter().filter(|(column, _)| open(*column)) {
-                of_column.entry(*column).or_default().push(index);
-            }
-        }
-        let ticks = rows.iter().map(|row| row.entries.len() as u64).sum();
-        let mut round = Self {
+        let structures = [
+            (Class::RoundTrip, wanted.classes.has(Class::RoundTrip)),
+            (Class::OddSet, wanted.classes.any(&[Class::Blossom, Class::OddSet])),
+            (Class::LotSizing, wanted.classes.has(Class::LotSizing)),
+            (Class::Clique, wanted.classes.any(&[Class::Clique, Class::OddHole])),
+            (Class::FlowCover, wanted.classes.has(Class::FlowCover)),
+        ];
+        let asked = structures.iter().filter(|(_, asked)| *asked);
+        let recognised = asked.map(|(class, _)| Task::Recognise(*class));
+        let tasks = std::iter::once(Task::Plan).chain(recognised).chain([Task::Gather(0)]);
+        Self {
             wanted,
+            whole: whole.to_vec(),
+            trip: trip.cloned(),
             x: x.to_vec(),
-            rows,
-            of_column,
+            rows: Vec::new(),
+            of_column: BTreeMap::new(),
             structures: Structures::default(),
-            tasks: Vec::new(),
+            zero_half: None,
+            tasks: tasks.collect(),
             found: Vec::new(),
-            ticks,
-        };
-        round.recognise(frame, trip);
-        round.plan(whole);
-        round
+            queue: None,
+            taken: Vec::new(),
+            ticks: 0,
+        }
     }
 
-    fn recognise(&mut self, frame: &Frame, trip: Option<&RoundTrip>) {
-        let (rows, x, wanted) = (&self.rows, &self.x, self.wanted.classes);
+    /// Takes in rows of the relaxation until some entries are seen.
+    fn gather(&mut self, relaxation: &Relaxation, frame: &Frame, mut next: usize) {
+        let mut work = 0;
+        while work < AT_ONCE && next < relaxation.row_count() {
+            if let Some(row) = relaxation.exact_row(next) {
+                work += 1 + row.entries.len() as u64;
+                let open = |column: ColumnId| {
+                    !frame.integer[column.index()] && between(frame, column, &self.x)
+                };
+                for (column, _) in row.entries.iter().filter(|(column, _)| open(*column)) {
+                    self.of_column.entry(*column).or_default().push(self.rows.len());
+                }
+                self.rows.push(row);
+            }
+            next += 1;
+        }
+        self.ticks += work;
+        if next < relaxation.row_count() {
+            self.tasks.push(Task::Gather(next));
+        }
+    }
+
+    fn recognise(&mut self, frame: &Frame, class: Class) {
+        let (rows, x) = (&self.rows, &self.x);
         let found = &mut self.structures;
-        if wanted.has(Class::FlowCover) {
-            found.bounds = VariableBounds::new(rows, frame);
+        match class {
+            Class::FlowCover => found.bounds = VariableBounds::new(rows, frame),
+            Class::Clique => {
+                found.conflicts = Some(Conflicts::new(frame, x.len()));
+                self.tasks.push(Task::Graph);
+                return;
+            }
+            Class::LotSizing => found.lots = Some(Lots::new(rows, frame)),
+            Class::OddSet => found.odd = OddCuts::new(rows, frame, x),
+            _ => {
+                let of = |trip: &Rc<RoundTrip>| Trips::new(&trip.stops, &trip.arcs, rows, frame);
+                found.trips = self.trip.as_ref().and_then(of);
+            }
         }
-        if wanted.any(&[Class::Clique, Class::OddHole]) {
-            found.conflicts = Some(Conflicts::new(rows, frame, x));
+        self.ticks += rows.iter().map(|row| row.entries.len() as u64).sum::<u64>();
+    }
+
+    /// Goes on with the conflict graph.
+    fn graph(&mut self, frame: &Frame) {
+        let Some(graph) = &mut self.structures.conflicts else { return };
+        if let Some(work) = graph.step(&self.rows, frame, &self.x) {
+            self.ticks += work;
+            self.tasks.push(Task::Graph);
         }
-        if wanted.has(Class::LotSizing) {
-            found.lots = Some(Lots::new(rows, frame));
+    }
+
+    /// Goes on with the zero-half cuts.
+    fn halve(&mut self, frame: &Frame) {
+        let search = self.zero_half.get_or_insert_with(|| ZeroHalf::new(frame, &self.x));
+        if let Some(work) = search.step(&self.rows, (frame, &self.x), &mut self.found) {
+            self.ticks += work;
+            self.tasks.push(Task::ZeroHalf);
         }
-        if wanted.any(&[Class::Blossom, Class::OddSet]) {
-            found.odd = OddCuts::new(rows, frame, x);
-        }
-        let trip = trip.filter(|_| wanted.has(Class::RoundTrip));
-        found.trips = trip.and_then(|trip| Trips::new(&trip.stops, &trip.arcs, rows, frame));
     }
 
     /// What is looked at, in order.
-    fn plan(&mut self, whole: &[ColumnId]) {
+    fn plan(&mut self) {
         let (x, wanted) = (&self.x, self.wanted.classes);
+        self.ticks += x.len() as u64;
         let mut fractional: Vec<ColumnId> =
-            whole.iter().copied().filter(|c| is_fractional(x[c.index()])).collect();
+            self.whole.iter().copied().filter(|c| is_fractional(x[c.index()])).collect();
         let off = |c: &ColumnId| (x[c.index()] - x[c.index()].floor() - 0.5).abs();
         fractional.sort_by(|a, b| off(a).total_cmp(&off(b)).then(a.cmp(b)));
         fractional.truncate(if wanted.has(Class::Gomory) { MOST_TABLEAU } else { 0 });
@@ -145,13 +203,14 @@ impl CutRound {
         let Some(task) = self.tasks.pop() else { return false };
         self.ticks += 1;
         match task {
+            Task::Gather(next) => self.gather(relaxation, frame, next),
+            Task::Recognise(class) => self.recognise(frame, class),
+            Task::Graph => self.graph(frame),
+            Task::Plan => self.plan(),
             Task::Tableau(column) => self.tableau(relaxation, frame, column),
             Task::Row(index) => self.row(frame, index),
             Task::Literal(place) => self.literal(place),
-            Task::ZeroHalf => {
-                self.ticks += self.rows.iter().map(|row| row.entries.len() as u64).sum::<u64>();
-                self.found.extend(zero_half(&self.rows, frame, &self.x));
-            }
+            Task::ZeroHalf => self.halve(frame),
             Task::Lot(place) => {
                 let lots = self.structures.lots.as_ref();
                 self.found

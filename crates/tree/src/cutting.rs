@@ -139,37 +139,43 @@ impl Cutting {
         }
     }
 
-    /// The cuts of a round that are taken, with their numbers: the best that are not parallel, those
-    /// of the pool among them, each checked.
-    fn chosen(
-        &mut self,
-        round: &mut CutRound,
-        relaxation: &Relaxation,
-    ) -> Vec<(usize, GeneralCut)> {
-        let mut found = self.pool.violated(&round.x);
-        found.append(&mut round.found);
-        let mut taken: Vec<(usize, GeneralCut)> = Vec::new();
-        let mut next = self.pool.len();
-        for cut in choose(found, MOST_CUTS) {
-            match self.pool.find(&cut.row) {
-                Some((_, true)) => {}
-                Some((number, false)) => {
-                    self.result.returned += 1;
-                    taken.push((number, cut));
-                }
-                None if follows(&cut, &round.rows, &self.frame) => {
-                    let origin = |row: usize| round.origin(row, relaxation);
-                    taken.push((next, self.sources.keep(cut, &origin)));
-                    next += 1;
-                }
-                None => self.result.refused += 1,
+    /// Goes on with which cuts of a round are taken: the best that are not parallel, those of the
+    /// pool among them, each checked in a step of its own. The work done; `None` at the end.
+    fn choose_on(&mut self, round: &mut CutRound, relaxation: &Relaxation) -> Option<u64> {
+        let Some(queue) = &mut round.queue else {
+            let mut found = self.pool.violated(&round.x);
+            found.append(&mut round.found);
+            let work = found.iter().map(|cut| cut.row.entries.len() as u64).sum();
+            let mut best = choose(found, MOST_CUTS);
+            best.reverse();
+            round.queue = Some(best);
+            return Some(work);
+        };
+        let cut = queue.pop()?;
+        let work = 1 + cut.row.entries.len() as u64;
+        let fresh = round.taken.iter().filter(|(number, _)| *number >= self.pool.len()).count();
+        match self.pool.find(&cut.row) {
+            Some((_, true)) => {}
+            Some((number, false)) => {
+                self.result.returned += 1;
+                round.taken.push((number, cut));
             }
+            None if follows(&cut, &round.rows, &self.frame) => {
+                let origin = |row: usize| round.origin(row, relaxation);
+                let cut = self.sources.keep(cut, &origin);
+                round.taken.push((self.pool.len() + fresh, cut));
+            }
+            None => self.result.refused += 1,
         }
-        for (number, cut) in &taken {
+        Some(work)
+    }
+
+    /// Enters the cuts that were taken into the pool.
+    fn enter(&mut self, taken: &[(usize, GeneralCut)]) {
+        for (number, cut) in taken {
             self.result.added[cut.class.index()] += u32::from(*number >= self.pool.len());
             self.pool.enter(*number, cut.clone());
         }
-        taken
     }
 }
 
@@ -226,11 +232,10 @@ impl Search {
 
     /// Begins to look for cuts at the point in hand.
     pub(crate) fn start_cut_round(&mut self) -> Option<Progress> {
-        let (cutting, relaxation) = (self.cutting.as_ref()?, self.relaxation.as_ref()?);
         let x = &self.hand.as_ref()?.point.as_ref()?.x;
         let wanted = (self.settings.cuts, self.chooser.whole());
-        let round = CutRound::new(relaxation, &cutting.frame, wanted, self.trip.as_deref(), x);
-        self.ledger.ticks += round.ticks;
+        let round = CutRound::new(wanted, self.trip.as_ref(), x);
+        self.ledger.ticks += x.len() as u64;
         self.job = Job::Cut(Box::new(round));
         None
     }
@@ -248,7 +253,12 @@ impl Search {
         if more {
             return None;
         }
-        let cuts = cutting.chosen(round, relaxation);
+        if let Some(work) = cutting.choose_on(round, relaxation) {
+            self.ledger.ticks += work;
+            return None;
+        }
+        let cuts = std::mem::take(&mut round.taken);
+        cutting.enter(&cuts);
         if cuts.is_empty() {
             return self.no_more_cuts();
         }
@@ -264,7 +274,7 @@ impl Search {
             }
         } else {
             let count = u32::try_from(cuts.len()).unwrap_or(u32::MAX);
-            hand.cut_rounds += 1;
+            (hand.cut_rounds, hand.was_cut) = (hand.cut_rounds + 1, true);
             hand.rows_added += count;
             cutting.result.below += count;
         }
@@ -333,6 +343,7 @@ impl Search {
         self.job = Job::None;
         self.hand = None;
         self.plan = None;
+        self.ledger.node_work.cut_off += 1;
         self.note_cuts(None);
         self.tree.node_mut(NodeId::ROOT).state = NodeState::Infeasible;
         self.events.push(Event::Dropped { node: NodeId::ROOT, state: NodeState::Infeasible });

@@ -76,7 +76,10 @@ impl Search {
         match choice {
             Some(_) if held => self.hold(hand.node, inherited, point.x.clone()),
             Some(choice) => self.branch(hand.node, inherited, &choice, &point.x),
-            None => self.leaf(hand.node, hand.proved.as_ref()),
+            None => {
+                self.ledger.node_work.cut_off += u32::from(hand.was_cut);
+                self.leaf(hand.node, hand.proved.as_ref());
+            }
         }
         self.announce();
         None
@@ -156,6 +159,8 @@ impl Search {
     /// direction of the objective.
     pub(crate) fn leaf(&mut self, node: NodeId, proved: Option<&Number>) {
         self.ledger.pruned = true;
+        let by_step = self.target.closes_by_step(self.tree.node(node).bound);
+        self.ledger.node_work.stepped += u32::from(by_step);
         let own = proved.map(|bound| signed(&self.model, bound.clone()));
         let checked = self.target.proves_float(self.tree.node(node).proved)
             || own.is_some_and(|bound| self.target.proves(&bound));
@@ -187,6 +192,7 @@ impl Search {
         }
         let hand = self.hand.take()?;
         let relaxation = self.relaxation.as_ref()?;
+        self.ledger.node_work.cut_off += u32::from(hand.was_cut);
         self.tree.keep_basis(hand.node, relaxation.simplex.basis());
         let node = self.tree.node_mut(hand.node);
         node.state = NodeState::Infeasible;

@@ -86,6 +86,8 @@ pub enum Diagnosis {
         unsolved: u32,
         /// All leaves.
         leaves: u32,
+        /// Whether the best plan meets a row only within the tolerance.
+        rounded: bool,
     },
 }
 
@@ -96,8 +98,13 @@ impl Search {
     pub fn diagnosis(&self, measures: &Measures) -> Vec<Diagnosis> {
         let summary = self.summary();
         let unsolved = u32::try_from(self.ledger.unsolved.len()).unwrap_or(u32::MAX);
+        let rounded = self
+            .incumbent
+            .as_ref()
+            .is_some_and(|best| best.solution.member && !best.solution.exact);
+        let leaves = [summary.leaves_unchecked, unsolved, measures.leaves.all()];
         let found = [
-            numerics(summary.leaves_unchecked, unsolved, measures.leaves.all()),
+            numerics(leaves, rounded),
             self.weak_root(&summary),
             self.copies(&summary, measures),
             late(&summary, measures),
@@ -125,9 +132,10 @@ impl Search {
     }
 }
 
-fn numerics(unproved: u32, unsolved: u32, leaves: u32) -> Option<Diagnosis> {
+fn numerics([unproved, unsolved, leaves]: [u32; 3], rounded: bool) -> Option<Diagnosis> {
     let many = unproved > 0 && share(unproved, leaves) >= UNPROVED;
-    (unsolved > 0 || many).then_some(Diagnosis::Numerics { unproved, unsolved, leaves })
+    let told = unsolved > 0 || many || rounded;
+    told.then_some(Diagnosis::Numerics { unproved, unsolved, leaves, rounded })
 }
 
 fn late(summary: &Summary, measures: &Measures) -> Option<Diagnosis> {
@@ -166,12 +174,14 @@ fn share(part: u32, all: u32) -> f64 {
 mod tests {
     use super::*;
 
-    // The exact proof of a leaf succeeds on every model that we have, so the rule is asked alone.
+    // The exact proof of a leaf succeeds on every model that we have, so these are asked alone.
     #[test]
     fn leaves_without_a_proof_and_nodes_without_a_solution_are_numerics() {
-        assert!(matches!(numerics(5, 0, 100), Some(Diagnosis::Numerics { unproved: 5, .. })));
-        assert!(matches!(numerics(0, 1, 100), Some(Diagnosis::Numerics { unsolved: 1, .. })));
-        assert_eq!(numerics(1, 0, 100), None);
-        assert_eq!(numerics(0, 0, 0), None);
+        let told = |leaves| numerics(leaves, false);
+        assert!(matches!(told([5, 0, 100]), Some(Diagnosis::Numerics { unproved: 5, .. })));
+        assert!(matches!(told([0, 1, 100]), Some(Diagnosis::Numerics { unsolved: 1, .. })));
+        assert_eq!(told([1, 0, 100]), None);
+        assert_eq!(told([0, 0, 0]), None);
+        assert!(matches!(numerics([0, 0, 1], true), Some(Diagnosis::Numerics { .. })));
     }
 }

@@ -9,12 +9,15 @@
 use model::ColumnId;
 
 use crate::event::{Branch, NodeId, NodeState, Side};
+use crate::relaxation::Relaxation;
 use crate::search::{Hand, PointInHand, Progress, Search};
 use crate::target::signed;
 
 /// Bounds that are tightened by reduced costs at one node at most, those of the largest first:
 /// each costs a proof.
 const MOST_FIXED: usize = 50;
+/// Entries of rows that these proofs look at, at most: fewer bounds are tightened on large models.
+const MOST_WORK: usize = 2_000_000;
 /// How much of a step is forgiven before its proof.
 const NEAR: f64 = 1e-9;
 
@@ -51,7 +54,10 @@ impl Search {
         };
         let mut found = self.candidates_to_fix(point, best - point.bound);
         found.sort_by(|a, b| b.1.total_cmp(&a.1).then(a.0.column.cmp(&b.0.column)));
-        found.truncate(MOST_FIXED);
+        let entries = self.relaxation.as_ref().map_or(0, Relaxation::entries);
+        let room = (MOST_WORK / entries.max(1)).clamp(1, MOST_FIXED);
+        found.truncate(room);
+        let tried = found.len();
         let mut path = self.tree.path(node);
         let mut fixed = Vec::new();
         for (bound, _) in found {
@@ -63,7 +69,7 @@ impl Search {
             }
             path.pop();
         }
-        self.ledger.ticks += (path.len() + fixed.len()) as u64;
+        self.ledger.ticks += (path.len() + tried * entries) as u64;
         self.ledger.node_work.fixed += fixed.len() as u64;
         self.ledger.pruned |= !fixed.is_empty();
         self.tree.tightened.set_after(node, fixed);

@@ -34,7 +34,8 @@
 //! | item | use it for |
 //! |---|---|
 //! | [`Settings`] | rules and limits |
-//! | [`Search`] | running: `advance`, `run`, `pause`, `stop`; steering: `act`, `replay` |
+//! | [`Search`] | running: `advance`, `run`, `run_to_a_plan`, `pause`, `stop`; steering: `act`, `replay` |
+//! | [`Making`] | a search of a large model made in slices |
 //! | [`Act`], [`Acted`], [`Refusal`] | branching, closing, cutting and stopping by hand |
 //! | [`Rule`] | rules and limits changed during a run |
 //! | [`Heuristics`], [`Suggestion`] | how plans are looked for; values from which one may be made |
@@ -84,6 +85,7 @@ mod heuristics;
 mod hold;
 mod inspect;
 mod ledger;
+mod making;
 mod measures;
 mod node;
 mod open;
@@ -119,6 +121,7 @@ pub use event::{Branch, Event, NodeId, NodeState, Origin, Side};
 pub use family_view::FamilyView;
 pub use heuristics::{GivenPlan, Heuristics, SuggestedBy, Suggestion};
 pub use inspect::{NodeView, ViolatedSubset};
+pub use making::Making;
 pub use measures::{Estimate, Gains, Leaves, Measures};
 pub use proving::standings;
 pub use root::{RootResult, Status};

@@ -7,6 +7,7 @@
 use model::{Number, Sense};
 use proof::{Budget, ExactMultipliers, Wish};
 
+use crate::cutting::Cutting;
 use crate::event::{NodeId, NodeState};
 use crate::proving::Proving;
 use crate::search::{Job, Progress, Search};
@@ -69,7 +70,7 @@ impl Search {
     fn begin_proof(&mut self, proof: Proof, node: NodeId, wish: Wish) -> bool {
         let Some(relaxation) = &self.relaxation else { return false };
         let (from, budget) = match proof {
-            Proof::Leaf(_, from) => (self.tree.basis(from), LEAF),
+            Proof::Leaf(_, from) => (self.last_basis(from), LEAF),
             Proof::Root | Proof::NoRoot => (Some(relaxation.simplex.basis()), Budget::default()),
         };
         let Some(basis) = from else { return false };
@@ -77,6 +78,14 @@ impl Search {
         let proving = Proving::new(bounds, basis, wish, budget);
         self.job = Job::Prove(Box::new(proving), proof);
         true
+    }
+
+    /// The basis that the children of a node start from: of the root that with the general cuts, where
+    /// there is one, for its own may prove less than what closed the tree.
+    fn last_basis(&self, node: NodeId) -> Option<lp::Basis> {
+        let cut = self.cutting.as_ref().and_then(Cutting::basis);
+        let cut = cut.filter(|_| node == NodeId::ROOT).cloned();
+        cut.or_else(|| self.tree.basis(node))
     }
 
     /// The proof in hand is done.

@@ -210,6 +210,7 @@ impl Search {
         self.ledger.course.found.push(Found { nodes, work, value, origin: origin.clone() });
         self.events.push(Event::Incumbent { node, value, origin });
         self.target.improve(exact);
+        self.paused |= std::mem::take(&mut self.to_a_plan);
         self.drop_closed();
         internal
     }

@@ -57,6 +57,12 @@ pub(crate) struct Relaxation {
     exact: ExactRows,
     bounds: Vec<proof::Bounds>,
     moved: Vec<ColumnId>,
+    /// Entries of the written rows, and columns.
+    entries: usize,
+}
+
+fn rows_of(model: &Model) -> impl Iterator<Item = RowId> + Clone {
+    (0..model.row_count()).map(RowId::from_index)
 }
 
 impl Relaxation {
@@ -66,11 +72,13 @@ impl Relaxation {
     /// Where the kernel refuses the model (it has grown too large).
     pub(crate) fn new(model: &Rc<Model>) -> Result<Self, ProblemError> {
         let simplex = Simplex::new(problem(model, |row| model.row_is_in(row))?);
-        let rows = (0..model.row_count()).map(RowId::from_index);
+        let rows = rows_of(model);
         let written: Vec<bool> = rows.clone().map(|row| model.row_is_in(row)).collect();
         let origins = rows.filter(|row| written[row.index()]).map(RowOrigin::Written).collect();
         let bounds = proof::bounds_of(model);
+        let entries: usize = rows_of(model).map(|row| model.row_entries(row).len()).sum();
         Ok(Self {
+            entries: entries + model.columns().len(),
             model: Rc::clone(model),
             slack: simplex.basis(),
             simplex,
@@ -83,6 +91,11 @@ impl Relaxation {
             bounds,
             moved: Vec::new(),
         })
+    }
+
+    /// Entries of the written rows, and columns: what one proof looks at.
+    pub(crate) fn entries(&self) -> usize {
+        self.entries
     }
 
     /// Changes the bounds to those of the node at the end of `path`. `O(depth)`.

@@ -205,6 +205,7 @@ impl Search {
         let cut = self.cutting.as_mut().and_then(Cutting::take_point);
         let bound = cut.as_ref().map_or(own, |cut| if cut.0 > own { cut.0 } else { own });
         if self.target.closes(bound) {
+            self.ledger.node_work.cut_off += u32::from(!self.target.closes(own));
             self.drop_node(NodeId::ROOT);
         } else if self.is_to_be_held(NodeId::ROOT) {
             let x = self.root.as_ref().map(|root| root.x.clone()).unwrap_or_default();

@@ -14,6 +14,8 @@ use crate::relaxation::{Addition, RowOrigin};
 #[derive(Debug)]
 pub(crate) struct Rounds {
     model: Rc<Model>,
+    /// Families over subsets whose shape is not recognised yet, the next one last.
+    unrecognised: Vec<SubsetFamilyId>,
     separators: Vec<Separator>,
     rows: Vec<RowSeparator>,
     x: Vec<f64>,
@@ -26,6 +28,7 @@ pub(crate) struct Rounds {
 }
 
 impl Rounds {
+    /// Rounds without the families over subsets, which [`Self::recognise_next`] takes in.
     pub(crate) fn new(model: &Rc<Model>) -> Self {
         let over_subsets = (0..model.subset_families().len()).map(SubsetFamilyId::from_index);
         let written = model.families().iter().enumerate();
@@ -33,7 +36,8 @@ impl Rounds {
             written.filter(|(_, f)| f.state == FamilyState::OnDemand && !f.rows.is_empty());
         let row_separator = |(index, _)| RowSeparator::new(model, FamilyId::from_index(index));
         Self {
-            separators: over_subsets.map(|id| Separator::new(model, id)).collect(),
+            unrecognised: over_subsets.rev().collect(),
+            separators: Vec::new(),
             rows: on_demand.map(row_separator).collect(),
             model: Rc::clone(model),
             x: Vec::new(),
@@ -42,6 +46,20 @@ impl Rounds {
             found: Vec::new(),
             ended: 0,
         }
+    }
+
+    /// Rounds with every family, at once.
+    pub(crate) fn whole(model: &Rc<Model>) -> Self {
+        let mut rounds = Self::new(model);
+        while rounds.recognise_next() {}
+        rounds
+    }
+
+    /// Recognises the next family over subsets; whether there was one.
+    pub(crate) fn recognise_next(&mut self) -> bool {
+        let next = self.unrecognised.pop();
+        self.separators.extend(next.map(|id| Separator::new(&self.model, id)));
+        next.is_some()
     }
 
     /// Whether there is nothing to separate.

@@ -7,13 +7,16 @@ use crate::search::Search;
 use crate::settings::{Branching, Selection};
 
 /// What holds from now on.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+#[derive(Debug, Clone, PartialEq, Eq)]
 pub enum Rule {
     /// The branching rule. Nodes that waited for a branching by hand are branched on by it.
     Branching(Branching),
     /// The rule for the next node, over all nodes that are open.
     Selection(Selection),
-    /// The search ends when so many nodes are solved in all; `None` is no limit.
+    /// The variables that go first, by name, as [`crate::Settings::priority`].
+    Priority(Vec<String>),
+    /// The search ends when so many nodes are solved in all; `None` is no limit. One that has ended by
+    /// this limit goes on where it is raised.
     Nodes(Option<u32>),
     /// The search ends when so many simplex iterations are made in all; `None` is no limit.
     Iterations(Option<u64>),
@@ -21,17 +24,21 @@ pub enum Rule {
 
 impl Search {
     /// Lets a rule hold from now on. `O(nodes held)`.
-    pub(crate) fn change(&mut self, rule: Rule) {
+    pub(crate) fn change(&mut self, rule: &Rule) {
         match rule {
             Rule::Branching(branching) => {
-                self.settings.branching = branching;
-                if branching != Branching::ByHand {
-                    self.release_all(branching);
+                self.settings.branching = *branching;
+                if *branching != Branching::ByHand {
+                    self.release_all(*branching);
                 }
             }
-            Rule::Selection(selection) => self.settings.selection = selection,
-            Rule::Nodes(limit) => self.settings.node_limit = limit,
-            Rule::Iterations(limit) => self.settings.iteration_limit = limit,
+            Rule::Selection(selection) => self.settings.selection = *selection,
+            Rule::Priority(names) => {
+                self.chooser.prefer(&self.model, names);
+                self.settings.priority.clone_from(names);
+            }
+            Rule::Nodes(limit) => self.settings.node_limit = *limit,
+            Rule::Iterations(limit) => self.settings.iteration_limit = *limit,
         }
     }
 

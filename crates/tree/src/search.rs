@@ -18,6 +18,7 @@ use crate::dive::Dive;
 use crate::event::{Event, NodeId, Origin};
 use crate::heuristics::{SuggestedBy, Suggestions};
 use crate::hold::Holding;
+use crate::making::{Making, Parts};
 use crate::node::Tree;
 use crate::open::Open;
 use crate::probe::Probing;
@@ -75,7 +76,9 @@ pub(crate) enum Ending {
     Complete,
     /// The root relaxation is unbounded.
     Unbounded,
-    /// A limit, or something that stood in the way, in words.
+    /// As many nodes as the settings allow are solved: goes on where more are allowed.
+    NodeLimit,
+    /// Another limit, or something that stood in the way, in words.
     Stopped(String),
 }
 
@@ -155,6 +158,8 @@ pub(crate) struct Hand {
     pub(crate) cutting: bool,
     /// Rounds of general cuts at a node below the root.
     pub(crate) cut_rounds: u32,
+    /// Whether general cuts were added for it there.
+    pub(crate) was_cut: bool,
     /// Whether columns were tried for branching, and the best of them.
     pub(crate) probed: bool,
     pub(crate) probed_choice: Option<Choice>,
@@ -175,6 +180,7 @@ impl Hand {
             tried: false,
             cutting: false,
             cut_rounds: 0,
+            was_cut: false,
             probed: false,
             probed_choice: None,
         }
@@ -242,6 +248,8 @@ pub struct Search {
     pub(crate) state: State,
     pub(crate) quota: Option<u32>,
     pub(crate) paused: bool,
+    /// Whether it stands still at the next plan that is better than all before.
+    pub(crate) to_a_plan: bool,
     pub(crate) acts: Acts,
     pub(crate) holding: Holding,
     pub(crate) roundings: Roundings,
@@ -252,22 +260,34 @@ pub struct Search {
 }
 
 impl Search {
-    /// A search that has done nothing yet. `O(non-zeros)`.
+    /// A search that has done nothing yet, made at once; [`Making`] makes it in slices.
+    /// `O(non-zeros)` for each of its parts.
     #[must_use]
     pub fn new(model: Rc<Model>, settings: Settings) -> Self {
-        let mut target = Target::new(&model, settings.node_work.lattice);
+        let mut making = Making::new(model, settings);
+        loop {
+            if let Some(search) = making.advance(u64::MAX) {
+                return search;
+            }
+        }
+    }
+
+    /// A search of the parts that were made; those that are missing are made here.
+    pub(crate) fn of_parts(model: Rc<Model>, settings: Settings, parts: Parts) -> Self {
+        let lattice = settings.node_work.lattice;
+        let mut target = parts.target.unwrap_or_else(|| Target::new(&model, lattice));
         if let Some(value) = settings.cutoff.and_then(decimal) {
             target.improve(signed(&model, value));
         }
-        let relaxation = Relaxation::new(&model);
-        let mut search = Self {
-            rounds: Rounds::new(&model),
-            checker: Checker::new(&model),
-            chooser: Chooser::new(&model, &settings.priority),
-            trip: settings.heuristics.trip.then(|| RoundTrip::find(&model).map(Rc::new)).flatten(),
+        let chooser = parts.chooser.unwrap_or_else(|| Chooser::new(&model, &settings.priority));
+        Self {
+            rounds: parts.rounds.unwrap_or_else(|| Rounds::whole(&model)),
+            checker: parts.checker.unwrap_or_else(|| Checker::new(&model)),
+            chooser,
+            trip: parts.trip,
             tree: Tree::new(),
-            cutting: (!settings.cuts.is_empty()).then(|| Cutting::new(&model)),
-            propagator: settings.node_work.propagation.then(|| Propagator::new(&model)),
+            cutting: parts.cutting,
+            propagator: parts.propagator,
             open: Open::default(),
             target,
             incumbent: None,
@@ -280,22 +300,18 @@ impl Search {
             state: State::Root,
             quota: None,
             paused: false,
+            to_a_plan: false,
             acts: Acts::default(),
             holding: Holding::default(),
             roundings: Roundings::default(),
             suggestions: Suggestions::default(),
-            ledger: Ledger::default(),
+            ledger: Ledger { trouble: parts.trouble, ..Ledger::default() },
             doubtful: Doubtful::default(),
             events: vec![Event::Created { node: NodeId::ROOT, parent: None, branching: None }],
-            relaxation: None,
+            relaxation: parts.relaxation,
             model,
             settings,
-        };
-        match relaxation {
-            Ok(relaxation) => search.relaxation = Some(relaxation),
-            Err(error) => search.ledger.trouble = error.to_string(),
         }
-        search
     }
 
     /// Works on for about `ticks` non-zeros touched, at least one step.
@@ -338,6 +354,14 @@ impl Search {
             self.state = State::Searching;
         }
         self.quota = nodes;
+        self.to_a_plan = false;
+    }
+
+    /// Searches on until a plan is found that is better than all before, or to the end. Also ends a
+    /// pause. Where it stands still, also inside a node, changes no event.
+    pub fn run_to_a_plan(&mut self) {
+        self.run(None);
+        self.to_a_plan = true;
     }
 
     /// Stands still after the slice in hand; nothing is lost. An act made while a node is in hand
@@ -352,6 +376,12 @@ impl Search {
         if !matches!(self.state, State::Finished(_)) {
             self.end(Ending::Stopped("stopped".to_owned()));
         }
+    }
+
+    /// Whether it has ended.
+    #[must_use]
+    pub fn is_over(&self) -> bool {
+        matches!(self.state, State::Finished(_))
     }
 
     /// The events since they were last taken.
@@ -433,8 +463,9 @@ impl Search {
         };
         self.give_up_proofs();
         self.job = Job::None;
+        let may_go_on = ending == Ending::NodeLimit;
         self.state = State::Finished(ending);
-        self.acts.refuse_all(self.ledger.nodes);
+        self.acts.refuse_all(self.ledger.nodes, may_go_on);
     }
 
     /// An internal value as the user reads it.

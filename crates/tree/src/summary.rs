@@ -12,6 +12,11 @@ pub struct NodeWorkCounts {
     pub tightened: u64,
     /// Bounds that reduced costs tightened.
     pub fixed: u64,
+    /// Leaves that only the step of the objective closed: without it their bound would have left
+    /// them open.
+    pub stepped: u32,
+    /// Nodes closed after general cuts were added for them; the root among them.
+    pub cut_off: u32,
 }
 
 /// What a search gave. Bounds and values are in the direction of the objective.
@@ -91,6 +96,7 @@ impl Search {
         let State::Finished(ending) = &self.state else { return (Status::Running, None) };
         match ending {
             Ending::Unbounded => (Status::Unbounded, None),
+            Ending::NodeLimit => (Status::Limit, Some("node limit".to_owned())),
             Ending::Stopped(why) => (Status::Limit, Some(why.clone())),
             Ending::Complete => self.complete_standing(),
         }

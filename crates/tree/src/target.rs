@@ -67,6 +67,12 @@ impl Target {
         self.best.is_some() && bound >= self.threshold
     }
 
+    /// Whether a bound closes a node by the step of the objective alone.
+    pub(crate) fn closes_by_step(&self, bound: f64) -> bool {
+        let best = self.best().filter(|_| self.step.is_some());
+        self.closes(bound) && best.is_some_and(|best| bound < best - SLACK * one_or_size(best))
+    }
+
     /// Whether a bound that was proved leaves no better value: exact.
     pub(crate) fn proves(&self, proved: &Number) -> bool {
         match (&self.improving, &self.best) {

@@ -132,7 +132,7 @@ impl Search {
             return Some(Progress::Paused);
         }
         if self.settings.node_limit.is_some_and(|limit| self.ledger.nodes >= limit) {
-            self.end(Ending::Stopped("node limit".to_owned()));
+            self.end(Ending::NodeLimit);
             return Some(Progress::Finished);
         }
         let Some(node) = self.take_open() else {

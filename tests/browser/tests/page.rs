@@ -36,6 +36,9 @@ mod proofs;
 #[path = "page/settings.rs"]
 mod settings;
 
+#[path = "page/control.rs"]
+mod control;
+
 #[path = "page/published.rs"]
 mod published;
 

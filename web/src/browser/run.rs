@@ -7,7 +7,7 @@ use std::collections::VecDeque;
 use gloo_timers::callback::Timeout;
 use record::message::{Envelope, LaneJob, Reply, Request, RunNumber};
 use record::opinion::Opinion;
-use record::results::{Judgement, Status};
+use record::results::{Judgement, SearchReport, Status};
 use record::scenario::Rival;
 use report::audit::sentences;
 
@@ -45,6 +45,11 @@ impl Led {
             None => Self::Nodes(last),
         }
     }
+}
+
+/// Whether a search has ended because as many nodes are solved as are allowed.
+pub(crate) fn at_the_limit(report: &SearchReport) -> bool {
+    report.status == Status::Limit && report.stopped.as_deref() == Some("node limit")
 }
 
 /// Whether two jobs are the same but for the run's number, the title and acts by hand.
@@ -86,6 +91,10 @@ pub(crate) struct LaneRun {
     rooted: bool,
     /// Whether the search shall begin as soon as the root is solved.
     pub(crate) run_at_root: bool,
+    /// The name of the file that the log is saved as.
+    pub(crate) log_file: String,
+    /// Whether the search has ended at its limit of nodes, so that it may be raised.
+    limited: bool,
     /// Workers lost since a person last asked for something.
     pub(crate) losses: u32,
 }
@@ -107,6 +116,8 @@ impl LaneRun {
             to_end: false,
             rooted: false,
             run_at_root: false,
+            log_file: String::new(),
+            limited: false,
             losses: 0,
         }
     }
@@ -125,7 +136,7 @@ impl LaneRun {
         self.tree = Shared::new(RefCell::default());
         self.inbox.clear();
         self.rest();
-        self.rooted = false;
+        (self.rooted, self.limited) = (false, false);
         self.post(&Request::Load(Box::new(self.job.clone())));
         LaneAction::Load
     }
@@ -174,7 +185,10 @@ impl LaneRun {
                 self.to_end = false;
                 Some(LaneAction::Paused(*report, self.settled()))
             }
-            Reply::Done(report) => Some(LaneAction::Done(*report, self.settled())),
+            Reply::Done(report) => {
+                self.limited = at_the_limit(&report);
+                Some(LaneAction::Done(*report, self.settled()))
+            }
             Reply::Conflict(conflict) => {
                 self.watchdog = None;
                 Some(LaneAction::Conflict(conflict))
@@ -184,7 +198,13 @@ impl LaneRun {
                 self.watchdog = None;
                 Some(LaneAction::Failed(error))
             }
-            Reply::Acted(acted) => refusal(&acted, &self.columns).map(LaneAction::Notice),
+            Reply::Acted(acted) => {
+                // Of a search that has ended only what lets it go on takes effect.
+                let goes_on = acted.refused.is_none() && std::mem::take(&mut self.limited);
+                let refused = refusal(&acted, &self.columns).map(LaneAction::Notice);
+                refused.or_else(|| goes_on.then_some(LaneAction::Asked(Phase::Running)))
+            }
+            Reply::Log(Err(why)) => Some(LaneAction::Notice(format!("No log was saved: {why}."))),
             Reply::Audited(found) => {
                 let words = sentences(&found).join(" ");
                 let proved = found.judgement == Judgement::Proved;
@@ -197,6 +217,7 @@ impl LaneRun {
             | Reply::Bound(_)
             | Reply::Node(_)
             | Reply::Evidence(_)
+            | Reply::Log(Ok(_))
             | Reply::Written(_)
             | Reply::Studied(_)
             | Reply::Ready { .. }

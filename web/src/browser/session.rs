@@ -15,7 +15,7 @@ use gloo_timers::callback::Timeout;
 use record::event::NodeNumber;
 use record::message::{
     BindJob, CheckJob, CheckReport, Complaint, Envelope, Explanation, GuideSection, InstanceReport,
-    LaneJob, Reply, Request,
+    LaneJob, LogJob, Reply, Request,
 };
 use record::opinion::Opinion;
 use record::results::ErrorReport;
@@ -28,6 +28,7 @@ use crate::browser::frame::Frame;
 use crate::browser::meanings::Meanings;
 use crate::browser::opinions::{Opinions, Told};
 use crate::browser::run::{LaneRun, Led, TreeCell};
+use crate::browser::share::download;
 use crate::browser::worker::{FromWorker, WorkerHandle};
 use crate::state::board::{Board, BoardAction, LaneAction};
 use crate::state::document::{Document, DocumentAction};
@@ -198,6 +199,20 @@ impl Session {
         }
         self.ask(id, &Request::Run { nodes }, Phase::Running);
         self.set_limit(id);
+    }
+
+    /// Searches on to the next plan that is better than all before.
+    pub(crate) fn search_to_plan(&self, id: LaneId) {
+        self.ask(id, &Request::RunToPlan, Phase::Running);
+        self.set_limit(id);
+    }
+
+    /// Saves the log of a search that stands still as a file.
+    pub(crate) fn save_log(&self, id: LaneId, file: String, job: LogJob) {
+        if let Some(lane) = self.0.borrow_mut().lanes.get_mut(&id) {
+            lane.log_file = file;
+            lane.post(&Request::Log(Box::new(job)));
+        }
     }
 
     /// Lets the search stand still after the scenario's seconds, and says so. Time never steers
@@ -524,6 +539,10 @@ fn take_in_lane(id: LaneId, lane: &mut LaneRun, opinions: &mut Opinions, taken: 
         let reply = match reply {
             Reply::Relaxation(Ok(relaxation)) => {
                 opinions.ask((id, lane.job.run), relaxation);
+                continue;
+            }
+            Reply::Log(Ok(bytes)) => {
+                download(&lane.log_file, bytes.as_slice());
                 continue;
             }
             reply => reply,

@@ -1,6 +1,6 @@
 //! The address, the clipboard and downloads.
 
-use gloo_file::{Blob, ObjectUrl};
+use gloo_file::{Blob, BlobContents, ObjectUrl};
 use gloo_timers::callback::Timeout;
 use gloo_utils::{document, window};
 use wasm_bindgen::closure::Closure;
@@ -53,9 +53,9 @@ pub(crate) fn copy(text: &str, then: impl Fn(bool) + Clone + 'static) -> Option<
     Some(Copying { _done: done, _refused: refused })
 }
 
-/// Saves a text as a file of the browser's downloads.
-pub(crate) fn download(name: &str, text: &str) {
-    let url = ObjectUrl::from(Blob::new_with_options(text, Some("application/octet-stream")));
+/// Saves a text, or bytes, as a file of the browser's downloads.
+pub(crate) fn download(name: &str, content: impl BlobContents) {
+    let url = ObjectUrl::from(Blob::new_with_options(content, Some("application/octet-stream")));
     let Ok(link) = document().create_element("a") else { return };
     let named = link.set_attribute("href", &url).and(link.set_attribute("download", name));
     if let (Ok(()), Ok(link)) = (named, link.dyn_into::<HtmlElement>()) {

@@ -108,8 +108,8 @@ pub(crate) fn act_words(act: &Act, columns: &[String]) -> String {
         },
         ActKind::Stop => "stopped".to_owned(),
         ActKind::Rule => match act.on.as_slice() {
-            [name, value] => format!("{}: {value}", rule_name(name)),
-            _ => "a rule".to_owned(),
+            [name, values @ ..] => format!("{}: {}", rule_name(name), values.join(", ")),
+            [] => "a rule".to_owned(),
         },
     };
     format!("after {}: {done}", of(u64::from(act.after), "node"))
@@ -120,6 +120,7 @@ fn rule_name(name: &str) -> &str {
     match name {
         "selection" => "next node",
         "nodes" => "nodes at most",
+        "priority" => "variables first",
         "iterations" => "iterations at most",
         name => name,
     }

@@ -26,6 +26,10 @@ pub(crate) fn change(id: LaneId, letter: &str, hands: &Hands) -> Html {
                     { "nodes at most" }
                     <input type="number" min="0" data-testid="change-nodes" onchange={limit(id, session.clone())} />
                 </label>
+                <label class="family">
+                    { "variables first" }
+                    <input type="text" size="8" data-testid="change-priority" onchange={priority(id, session.clone())} />
+                </label>
             </div>
         </details>
     }
@@ -41,7 +45,7 @@ fn choice(
     let session = session.clone();
     let onchange = Callback::from(move |event: Event| {
         let select: HtmlSelectElement = event.target_unchecked_into();
-        session.act(id, rule(name, select.value()));
+        session.act(id, rule(name, vec![select.value()]));
         select.set_value("");
     });
     html! {
@@ -59,11 +63,24 @@ fn limit(id: LaneId, session: Session) -> Callback<Event> {
     Callback::from(move |event: Event| {
         let input = event.target().and_then(|input| input.dyn_into::<HtmlInputElement>().ok());
         if let Some(input) = input.filter(|input| !input.value().is_empty()) {
-            session.act(id, rule("nodes", input.value()));
+            session.act(id, rule("nodes", vec![input.value()]));
         }
     })
 }
 
-fn rule(name: &str, value: String) -> Act {
-    Act { after: 0, what: ActKind::Rule, node: None, on: vec![name.to_owned(), value] }
+/// Names of variables, between commas or spaces; none leaves all alike.
+fn priority(id: LaneId, session: Session) -> Callback<Event> {
+    Callback::from(move |event: Event| {
+        let input = event.target().and_then(|input| input.dyn_into::<HtmlInputElement>().ok());
+        if let Some(input) = input {
+            let names = input.value();
+            let names = names.split([',', ' ']).filter(|name| !name.is_empty());
+            session.act(id, rule("priority", names.map(str::to_owned).collect()));
+        }
+    })
+}
+
+fn rule(name: &str, values: Vec<String>) -> Act {
+    let on = std::iter::once(name.to_owned()).chain(values).collect();
+    Act { after: 0, what: ActKind::Rule, node: None, on }
 }

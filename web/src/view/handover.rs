@@ -49,7 +49,7 @@ pub(crate) fn TakeAway(props: &TakeProps) -> Html {
         let (job, title, said) = (props.job.clone(), props.title.clone(), said.setter());
         let file = file_name(&format!("{} {title}", props.letter));
         Callback::from(move |_: MouseEvent| {
-            download(&file, &record::file::print(&alone(&job, &title)));
+            download(&file, record::file::print(&alone(&job, &title)).as_str());
             said.set(format!("{file} is saved."));
         })
     };
@@ -73,7 +73,7 @@ pub(crate) fn TakeAway(props: &TakeProps) -> Html {
 fn taken(file: &str, answer: Result<Written, String>) -> String {
     match answer {
         Ok(written) => {
-            download(file, &written.text);
+            download(file, written.text.as_str());
             let notes = written.notes.iter().map(|note| advice(note));
             [vec![format!("{file} is saved.")], notes.collect()].concat().join(" ")
         }
@@ -82,7 +82,7 @@ fn taken(file: &str, answer: Result<Written, String>) -> String {
 }
 
 /// A scenario with this rival alone.
-fn alone(job: &LaneJob, title: &str) -> Scenario {
+pub(crate) fn alone(job: &LaneJob, title: &str) -> Scenario {
     Scenario {
         title: title.to_owned(),
         seed: job.seed,

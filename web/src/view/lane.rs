@@ -2,19 +2,21 @@
 //! bound ruler and its tree on the shared axis.
 
 use record::event::NodeNumber;
-use record::message::{LaneJob, RivalReport};
+use record::message::{LaneJob, LogJob, RivalReport};
 use record::results::ErrorReport;
 use record::scenario::{InstanceText, Rival, Run};
 use report::axis::Axis;
-use report::explain::grown;
+use report::explain::{further, grown};
 use report::number::{count, of};
 use yew::prelude::*;
 
+use crate::browser::run::at_the_limit;
 use crate::state::board::{BoardAction, Selection};
 use crate::state::document::{DocumentAction, Slot};
 use crate::state::editor::Draft;
 use crate::state::lane::{Lane, LaneId, Phase};
 use crate::state::pointer::Shared;
+use crate::state::share::file_of;
 use crate::state::steer::{Steer, is_stopped};
 use crate::state::words::{advice, sentence, status};
 use crate::view::acts::Acts;
@@ -23,7 +25,7 @@ use crate::view::drawing::Drawing;
 use crate::view::editor::{Editor, toggle};
 use crate::view::families::Families;
 use crate::view::figures::Figures;
-use crate::view::handover::TakeAway;
+use crate::view::handover::{TakeAway, alone};
 use crate::view::hands::{Hands, use_hands};
 use crate::view::inspector::focus_inspector;
 use crate::view::lane_name::LaneName;
@@ -88,6 +90,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 for words in props.lane.search.iter().flat_map(|search| grown(search)) {
                     <p class="small soft" data-testid="diagnosis">{ sentence(&words) }</p>
                 }
+                { wrong_with_the_plan(&props.lane) }
                 { reason(props.slot.id, &props.lane, props.draft.is_some().then_some(&writing)) }
                 if let Some(error) = &props.lane.error { { failure(error) } }
                 if let Some(hands) = &hands { { buttons(props, hands) } }
@@ -109,6 +112,19 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 />
             }
         </section>
+    }
+}
+
+/// What else is wrong with a plan that was given, once it is asked for.
+fn wrong_with_the_plan(lane: &Lane) -> Html {
+    let Some((words, rest)) = lane.search.as_ref().and_then(|search| further(search)) else {
+        return Html::default();
+    };
+    html! {
+        <details class="small" data-testid="all-broken">
+            <summary>{ words }</summary>
+            <ul>for one in rest { <li>{ sentence(one) }</li> }</ul>
+        </details>
     }
 }
 
@@ -181,8 +197,20 @@ fn button(name: &'static str, able: bool, press: Callback<MouseEvent>) -> Html {
     let onclick = if able { press } else { Callback::noop() };
     let disabled = if able { "false" } else { "true" };
     html! {
-        <button type="button" data-testid={name.to_lowercase()} aria-disabled={disabled} {onclick}>{ name }</button>
+        <button type="button" data-testid={name.to_lowercase().replace(' ', "-")} aria-disabled={disabled} {onclick}>{ name }</button>
     }
+}
+
+/// Saves the log of the search with the scenario of this rival alone.
+fn save_log(props: &LaneProps, hands: &Hands) -> Callback<MouseEvent> {
+    let (session, id) = (hands.session.clone(), props.slot.id);
+    let job = job(props.text.as_deref().cloned(), &props.slot.rival, &props.run, props.seed);
+    let (title, letter) = (props.title.clone(), props.letter.clone());
+    Callback::from(move |_: MouseEvent| {
+        let scenario = record::file::print(&alone(&job, &title));
+        let file = file_of(&format!("{letter} {title}"), "log");
+        session.save_log(id, file, LogJob { scenario, instance: 0, rival: 0 });
+    })
 }
 
 fn buttons(props: &LaneProps, hands: &Hands) -> Html {
@@ -207,6 +235,7 @@ fn buttons(props: &LaneProps, hands: &Hands) -> Html {
             { button("Run", phase.can_go_on() || (!over && matches!(phase, Phase::Done | Phase::Failed)), act(run)) }
             { button("Pause", phase == Phase::Running, act(|hands, at| hands.session.pause(at.lane))) }
             { button("Step", phase.can_go_on(), act(|hands, at| hands.session.search(at.lane, Some(1)))) }
+            { button("Next plan", phase.can_go_on(), act(|hands, at| hands.session.search_to_plan(at.lane))) }
             if props.lane.proving {
                 { button("Stop", true, act(|hands, at| hands.session.stop_proving(at.lane))) }
             } else {
@@ -214,6 +243,9 @@ fn buttons(props: &LaneProps, hands: &Hands) -> Html {
             }
             if over && props.lane.nodes() > 0 {
                 { button("Prove", !props.lane.proving, act(|hands, at| hands.session.prove(at.lane))) }
+            }
+            if matches!(phase, Phase::Done | Phase::Paused) && props.lane.nodes() > 0 {
+                { button("Save log", !props.lane.proving, save_log(props, hands)) }
             }
         </div>
     }
@@ -226,9 +258,13 @@ pub(crate) fn is_over(lane: &Lane) -> bool {
     lane.phase == Phase::Done && lane.search.as_ref().is_some_and(|search| ended(search.status))
 }
 
-/// Whether rules may be changed: the search has begun or may begin, and has not ended.
+/// Whether rules may be changed: the search has begun or may begin, and has not ended, but for its
+/// limit of nodes, which may be raised.
 fn may_change(lane: &Lane) -> bool {
-    matches!(lane.phase, Phase::Ready | Phase::Running | Phase::Pausing | Phase::Paused)
+    let at_work =
+        matches!(lane.phase, Phase::Ready | Phase::Running | Phase::Pausing | Phase::Paused);
+    let limited = || lane.search.as_ref().is_some_and(|search| at_the_limit(search));
+    at_work || (lane.phase == Phase::Done && limited())
 }
 
 fn drawing(props: &LaneProps, hands: &Hands) -> Html {

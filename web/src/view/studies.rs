@@ -66,7 +66,7 @@ fn decision_record(props: &StudiesProps, shelf: &Shelf) -> Html {
             let results = Found::on(&document, &board).on_record(&document);
             let text = on_record(&document, &results, &shelf, html);
             let ending = if html { "decision.html" } else { "decision.md" };
-            download(&file_of(&document.title, ending), &text);
+            download(&file_of(&document.title, ending), text.as_str());
         })
     };
     html! {
@@ -154,7 +154,7 @@ fn handed(document: &Document, found: &Answer) -> Html {
     let Ok(reports) = &found.reports else { return Html::default() };
     let proofs = certificate::json(reports).map(|text| {
         let name = file_of(&document.title, "certificates.json");
-        let onclick = Callback::from(move |_: MouseEvent| download(&name, &text));
+        let onclick = Callback::from(move |_: MouseEvent| download(&name, text.as_str()));
         html! { <button type="button" data-testid="certificates" {onclick}>{ "Save the certificates" }</button> }
     });
     html! {

@@ -26,12 +26,23 @@ pub(crate) fn act_of(model: &Model, act: &Act) -> Result<tree::Act, String> {
         ActKind::Close => Ok(tree::Act::Close { node: node(act)? }),
         ActKind::Cut => cut(model, &act.on),
         ActKind::Stop => Ok(tree::Act::Stop),
-        ActKind::Rule => rule(&act.on).map(tree::Act::Rule),
+        ActKind::Rule => rule(model, &act.on).map(tree::Act::Rule),
     }
 }
 
-/// A rule or a limit by its name in `[run]` and its value there; a limit of 0 is none.
-fn rule(on: &[String]) -> Result<Rule, String> {
+/// A rule or a limit by its name in `[run]` and its value there; a limit of 0 is none. After
+/// `priority` come the names of variables.
+fn rule(model: &Model, on: &[String]) -> Result<Rule, String> {
+    if let [name, variables @ ..] = on
+        && name == "priority"
+    {
+        let is_known = |name: &&String| model.variables().iter().any(|own| own.name == **name);
+        let unknown = variables.iter().find(|name| !is_known(name));
+        return match unknown {
+            Some(name) => Err(format!("the model has no variable {name}")),
+            None => Ok(Rule::Priority(variables.to_vec())),
+        };
+    }
     let [name, value] = on else { return Err("it names no rule and its value".to_owned()) };
     let limit = || value.parse::<u32>().map_err(|_| format!("{value} is no limit"));
     match name.as_str() {
@@ -40,7 +51,7 @@ fn rule(on: &[String]) -> Result<Rule, String> {
         "nodes" => limit().map(|most| Rule::Nodes((most > 0).then_some(most))),
         "iterations" => limit().map(|most| Rule::Iterations((most > 0).then_some(u64::from(most)))),
         _ => Err(format!(
-            "{name} is no rule that can be changed: branching, selection, nodes, iterations"
+            "{name} is no rule that can be changed: branching, selection, priority, nodes, iterations"
         )),
     }
 }
@@ -54,19 +65,22 @@ fn find<T: Copy>(words: &[(&str, T)], value: &str) -> Result<T, String> {
 }
 
 /// A rule as an act says it.
-fn rule_words(rule: Rule) -> Vec<String> {
+fn rule_words(rule: &Rule) -> Vec<String> {
     let limit = |most: Option<u64>| most.unwrap_or(0).to_string();
     let (name, value) = match rule {
         Rule::Branching(rule) => {
-            let word = BRANCHING.iter().find(|(_, own)| settings::branching(*own) == rule);
+            let word = BRANCHING.iter().find(|(_, own)| settings::branching(*own) == *rule);
             ("branching", word.map_or("", |word| word.0).to_owned())
         }
         Rule::Selection(rule) => {
-            let word = SELECTION.iter().find(|(_, own)| settings::selection(*own) == rule);
+            let word = SELECTION.iter().find(|(_, own)| settings::selection(*own) == *rule);
             ("selection", word.map_or("", |word| word.0).to_owned())
         }
+        Rule::Priority(names) => {
+            return std::iter::once("priority".to_owned()).chain(names.iter().cloned()).collect();
+        }
         Rule::Nodes(most) => ("nodes", limit(most.map(u64::from))),
-        Rule::Iterations(most) => ("iterations", limit(most)),
+        Rule::Iterations(most) => ("iterations", limit(*most)),
     };
     vec![name.to_owned(), value]
 }
@@ -126,7 +140,7 @@ fn written(model: &Model, act: &tree::Act, after: u32) -> Act {
             on.extend(names(&set));
             of(ActKind::Cut, None, on)
         }
-        tree::Act::Rule(rule) => of(ActKind::Rule, None, rule_words(*rule)),
+        tree::Act::Rule(rule) => of(ActKind::Rule, None, rule_words(rule)),
         tree::Act::Stop => of(ActKind::Stop, None, Vec::new()),
     }
 }
@@ -196,6 +210,8 @@ mod tests {
             act(ActKind::Rule, None, &["selection", "depth first"]),
             act(ActKind::Rule, None, &["nodes", "500"]),
             act(ActKind::Rule, None, &["iterations", "0"]),
+            act(ActKind::Rule, None, &["priority", "x"]),
+            act(ActKind::Rule, None, &["priority"]),
         ] {
             let known = act_of(&model, &given).unwrap();
             let told = tree::Acted { act: known, after: 4, replayed: false, refused: None };
@@ -214,6 +230,7 @@ mod tests {
             (act(ActKind::Rule, None, &["branching", "best"]), "best is none of most fractional"),
             (act(ActKind::Rule, None, &["cuts", "all"]), "cuts is no rule"),
             (act(ActKind::Rule, None, &["nodes", "-3"]), "-3 is no limit"),
+            (act(ActKind::Rule, None, &["priority", "z"]), "no variable z"),
             (act(ActKind::Rule, None, &[]), "names no rule"),
         ] {
             let refused = act_of(&model, &given).unwrap_err();

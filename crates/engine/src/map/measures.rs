@@ -105,11 +105,16 @@ fn words(model: &Model, diagnosis: &Diagnosis) -> (DiagnosisKind, String) {
             );
             (DiagnosisKind::ManyInfeasibleLeaves, words)
         }
-        Diagnosis::Numerics { unproved, unsolved, leaves } => {
+        Diagnosis::Numerics { unproved, unsolved, leaves, rounded } => {
             let (unproved, unsolved, leaves) = (count(*unproved), count(*unsolved), count(*leaves));
+            let plan = if *rounded {
+                ", and the best plan meets a row only within the tolerance"
+            } else {
+                ""
+            };
             let words = format!(
                 "{unproved} of {leaves} leaves could not be proved and {unsolved} nodes not be \
-                 solved: look at the range of the coefficients"
+                 solved{plan}: look at the range of the coefficients"
             );
             (DiagnosisKind::Numerics, words)
         }

@@ -35,6 +35,8 @@ pub(crate) fn search_report(model: &Model, search: &tree::Search) -> SearchRepor
             closed: summary.node_work.closed,
             tightened: summary.node_work.tightened,
             fixed: summary.node_work.fixed,
+            stepped: summary.node_work.stepped,
+            cut_off: summary.node_work.cut_off,
         },
         cuts: search.cuts().map(cuts_report),
         diagnosis: measures::diagnosis(model, &search.diagnosis(&measures)),

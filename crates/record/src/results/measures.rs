@@ -98,6 +98,10 @@ pub struct PlanReport {
     pub feasible: bool,
     /// What it costs, where that is known.
     pub value: Option<f64>,
-    /// What was not understood, and every row that it breaks, a sentence each.
+    /// What was not understood, and every row that it breaks, a sentence each; of a family over
+    /// subsets those members that a round of separation finds.
     pub remarks: Vec<String>,
+    /// How many of them are rows that it breaks: the last ones.
+    #[serde(default)]
+    pub broken: u32,
 }

@@ -44,7 +44,13 @@ fn search() -> SearchReport {
         }],
         checked: false,
         stopped: Some("the node limit".to_owned()),
-        node_work: crate::results::NodeWorkReport { closed: 1, tightened: 22, fixed: 3 },
+        node_work: crate::results::NodeWorkReport {
+            closed: 1,
+            tightened: 22,
+            fixed: 3,
+            stepped: 2,
+            cut_off: 1,
+        },
         ..SearchReport::default()
     }
 }

@@ -19,6 +19,8 @@ use super::{Class, GeneralCut};
 const MARGIN: f64 = 1e-6;
 /// Literals of one row that are looked at, heaviest first.
 const MOST_LITERALS: usize = 300;
+/// Entries of rows that one step reads.
+const AT_ONCE: u64 = 2_000;
 /// Literals with a fractional value among which the best clique is found exactly.
 const EXACT: usize = 40;
 /// Steps of that search.
@@ -33,9 +35,21 @@ struct Half {
     weights: Vec<(f64, Literal)>,
 }
 
-/// The conflict graph of some rows at a point.
+/// How far the graph is.
+#[derive(Debug, Clone, Copy)]
+enum Stage {
+    /// The next row that is read.
+    Read(usize),
+    /// The next literal that is joined to the others.
+    Join(usize),
+}
+
+/// The conflict graph of some rows at a point. It is whole once [`Self::step`] says so; only then is it
+/// asked for cliques and holes.
 #[derive(Debug, Clone)]
 pub struct Conflicts {
+    binary: Vec<bool>,
+    stage: Stage,
     halves: Vec<Half>,
     /// The sides in which a literal stands, with its weight.
     of: BTreeMap<Literal, Vec<(usize, f64)>>,
@@ -45,39 +59,60 @@ pub struct Conflicts {
 }
 
 impl Conflicts {
-    /// The graph at a point; only the sides that join some fractional literals are kept.
-    /// `O(entries + fractional² · sides of each)`.
+    /// A graph in which nothing is read yet. `O(columns)`.
     #[must_use]
-    pub fn new(rows: &[Row], frame: &Frame, x: &[f64]) -> Self {
-        let mut graph = Self {
+    pub fn new(frame: &Frame, columns: usize) -> Self {
+        Self {
+            binary: (0..columns).map(|c| frame.is_binary(ColumnId::from_index(c))).collect(),
+            stage: Stage::Read(0),
             halves: Vec::new(),
             of: BTreeMap::new(),
             fractional: Vec::new(),
-            joined: vec![],
-        };
-        let binary: Vec<bool> =
-            (0..x.len()).map(|c| frame.is_binary(ColumnId::from_index(c))).collect();
-        for (number, row) in rows.iter().enumerate() {
+            joined: Vec::new(),
+        }
+    }
+
+    /// Reads some rows or joins one literal to the others; the work done, or `None` once the graph is
+    /// whole. `O(entries + fractional² · sides of each)` in all.
+    pub fn step(&mut self, rows: &[Row], frame: &Frame, x: &[f64]) -> Option<u64> {
+        match self.stage {
+            Stage::Read(next) => Some(self.read(next, rows, frame, x)),
+            Stage::Join(next) => {
+                let (a, _) = *self.fractional.get(next)?;
+                let row = self.fractional.iter().map(|&(b, _)| self.witness(a, b).is_some());
+                let row: Vec<bool> = row.collect();
+                self.joined.push(row);
+                self.stage = Stage::Join(next + 1);
+                let own = self.of.get(&a).map_or(0, Vec::len);
+                Some((self.len() * (1 + own)) as u64)
+            }
+        }
+    }
+
+    /// Reads rows until some entries are seen.
+    fn read(&mut self, mut next: usize, rows: &[Row], frame: &Frame, x: &[f64]) -> u64 {
+        let mut work = 1;
+        while work < AT_ONCE && next < rows.len() {
+            work += 1 + rows[next].entries.len() as u64;
             for upper in [true, false] {
-                let used = Used { row: number, upper };
-                graph.halves.extend(half(row, used, frame, &binary));
+                let used = Used { row: next, upper };
+                let Some(half) = half(&rows[next], used, frame, &self.binary) else { continue };
+                for &(weight, literal) in &half.weights {
+                    self.of.entry(literal).or_default().push((self.halves.len(), weight));
+                }
+                self.halves.push(half);
             }
+            next += 1;
         }
-        for (place, half) in graph.halves.iter().enumerate() {
-            for &(weight, literal) in &half.weights {
-                graph.of.entry(literal).or_default().push((place, weight));
-            }
+        self.stage = Stage::Read(next);
+        if next >= rows.len() {
+            let inside = |literal: &&Literal| (1e-6..1.0 - 1e-6).contains(&value(**literal, x));
+            self.fractional = self.of.keys().filter(inside).map(|&l| (l, value(l, x))).collect();
+            self.fractional.sort_by(|a, b| b.1.total_cmp(&a.1).then(a.0.cmp(&b.0)));
+            self.fractional.truncate(MOST_LITERALS);
+            self.stage = Stage::Join(0);
         }
-        let inside = |literal: &&Literal| (1e-6..1.0 - 1e-6).contains(&value(**literal, x));
-        graph.fractional = graph.of.keys().filter(inside).map(|&l| (l, value(l, x))).collect();
-        graph.fractional.sort_by(|a, b| b.1.total_cmp(&a.1).then(a.0.cmp(&b.0)));
-        graph.fractional.truncate(MOST_LITERALS);
-        let list: Vec<Literal> = graph.fractional.iter().map(|(literal, _)| *literal).collect();
-        graph.joined = list
-            .iter()
-            .map(|&a| list.iter().map(|&b| graph.witness(a, b).is_some()).collect())
-            .collect();
-        graph
+        work
     }
 
     /// How many literals have a fractional value.

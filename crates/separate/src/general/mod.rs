@@ -48,7 +48,7 @@ pub use mir::{complemented, from_tableau};
 pub use odd_cuts::OddCuts;
 pub use round::{choose, cosine, fraction};
 pub use trips::Trips;
-pub use zero_half::zero_half;
+pub use zero_half::ZeroHalf;
 
 use model::Row;
 

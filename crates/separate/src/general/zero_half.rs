@@ -22,6 +22,8 @@ const MOST: usize = 150;
 const MOST_SUMS: usize = 40;
 /// The largest multiplier of a row.
 const MOST_SCALE: f64 = 1e6;
+/// Entries of rows that one step reads.
+const AT_ONCE: u64 = 2_000;
 /// What a sum must be under 1 by.
 const MARGIN: f64 = 1e-3;
 
@@ -43,63 +45,148 @@ struct Whole {
     scale: Number,
 }
 
-/// The zero-half cuts that a point violates. `O(rows · columns · rows)` over GF(2) at worst.
-#[must_use]
-pub fn zero_half(rows: &[Row], frame: &Frame, x: &[f64]) -> Vec<GeneralCut> {
-    let distances: Vec<f64> = (0..x.len()).map(|column| distance(frame, column, x)).collect();
-    let mut active: Vec<usize> = (0..x.len()).filter(|&c| distances[c] > 1e-9).collect();
-    active.sort_by(|&a, &b| distances[b].total_cmp(&distances[a]).then(a.cmp(&b)));
-    let (mut system, mut wholes) = (Vec::new(), Vec::new());
-    for (number, row) in rows.iter().enumerate() {
-        if wholes.len() >= MOST {
-            break;
-        }
-        if let Some((whole, mut parity)) = read(number, row, frame, x) {
-            parity.odd.retain(|&c| distances[c] > 1e-9);
-            parity.rows.insert(wholes.len());
-            wholes.push(whole);
-            system.push(parity);
-        }
-    }
-    let worth = |sum: &Parity| {
-        let all = sum.odd.iter().fold(sum.slack, |all, &column| all + distances[column]);
-        sum.right && all < 1.0 - MARGIN
-    };
-    let mut sums: Vec<BTreeSet<usize>> = Vec::new();
-    eliminate(system, &active, |sum| {
-        if worth(sum) && sums.len() < MOST_SUMS {
-            sums.push(sum.rows.clone());
-        }
-    });
-    let half = Number::from_parts(IBig::ONE, 2_u32.into());
-    let cut = |sum: BTreeSet<usize>| {
-        let mut total = Aggregate::default();
-        for place in sum {
-            let Whole { used, scale } = &wholes[place];
-            let y = if used.upper { scale * &half } else { -(scale * &half) };
-            total.add_side(frame, (*used, &rows[used.row]), &y);
-        }
-        plain(Class::ZeroHalf, &total, frame, x, &BTreeSet::new())
-    };
-    sums.into_iter().filter_map(cut).collect()
+/// How far the search is.
+#[derive(Debug, Clone, Copy)]
+enum Stage {
+    /// The next row that is read.
+    Read(usize),
+    /// The next column that is cleared.
+    Clear(usize),
+    /// The next sum that is made a cut.
+    Cut(usize),
 }
 
-/// Clears the columns one after the other and shows every sum on the way.
-fn eliminate(mut system: Vec<Parity>, active: &[usize], mut show: impl FnMut(&Parity)) {
-    system.iter().for_each(&mut show);
-    for &column in active.iter().take(MOST) {
+/// The search for zero-half cuts at a point, one step at a time. `O(rows · columns · rows)` over GF(2)
+/// at worst.
+#[derive(Debug, Clone)]
+pub struct ZeroHalf {
+    distances: Vec<f64>,
+    /// The columns that are cleared, those far from their bounds first.
+    active: Vec<usize>,
+    wholes: Vec<Whole>,
+    system: Vec<Parity>,
+    sums: Vec<BTreeSet<usize>>,
+    stage: Stage,
+}
+
+impl ZeroHalf {
+    /// A search at a point. `O(columns · log)`.
+    #[must_use]
+    pub fn new(frame: &Frame, x: &[f64]) -> Self {
+        let distances: Vec<f64> = (0..x.len()).map(|column| distance(frame, column, x)).collect();
+        let mut active: Vec<usize> = (0..x.len()).filter(|&c| distances[c] > 1e-9).collect();
+        active.sort_by(|&a, &b| distances[b].total_cmp(&distances[a]).then(a.cmp(&b)));
+        active.truncate(MOST);
+        Self {
+            distances,
+            active,
+            wholes: Vec::new(),
+            system: Vec::new(),
+            sums: Vec::new(),
+            stage: Stage::Read(0),
+        }
+    }
+
+    /// Reads some rows, clears one column or makes one sum a cut that it puts to those `found`; the
+    /// work done, or `None` at the end.
+    pub fn step(
+        &mut self,
+        rows: &[Row],
+        (frame, x): (&Frame, &[f64]),
+        found: &mut Vec<GeneralCut>,
+    ) -> Option<u64> {
+        match self.stage {
+            Stage::Read(next) => Some(self.read(next, rows, frame, x)),
+            Stage::Clear(next) => {
+                self.stage = Stage::Clear(next + 1);
+                match self.active.get(next) {
+                    Some(&column) => Some(self.clear(column)),
+                    None => {
+                        self.stage = Stage::Cut(0);
+                        Some(1)
+                    }
+                }
+            }
+            Stage::Cut(next) => {
+                let sum = self.sums.get(next)?;
+                self.stage = Stage::Cut(next + 1);
+                let (cut, work) = self.cut(sum, rows, frame, x);
+                found.extend(cut);
+                Some(work)
+            }
+        }
+    }
+
+    /// Reads rows until some entries are seen.
+    fn read(&mut self, mut next: usize, rows: &[Row], frame: &Frame, x: &[f64]) -> u64 {
+        let mut work = 1;
+        while work < AT_ONCE && next < rows.len() && self.wholes.len() < MOST {
+            let row = &rows[next];
+            work += 1 + row.entries.len() as u64;
+            if let Some((whole, mut parity)) = read(next, row, frame, x) {
+                parity.odd.retain(|&c| self.distances[c] > 1e-9);
+                parity.rows.insert(self.wholes.len());
+                self.wholes.push(whole);
+                self.system.push(parity);
+            }
+            next += 1;
+        }
+        self.stage = Stage::Read(next);
+        if next >= rows.len() || self.wholes.len() >= MOST {
+            let first = std::mem::take(&mut self.system);
+            first.iter().for_each(|sum| self.show(sum));
+            (self.system, self.stage) = (first, Stage::Clear(0));
+        }
+        work
+    }
+
+    /// Takes a sum that the point violates.
+    fn show(&mut self, sum: &Parity) {
+        let all = sum.odd.iter().fold(sum.slack, |all, &column| all + self.distances[column]);
+        if sum.right && all < 1.0 - MARGIN && self.sums.len() < MOST_SUMS {
+            self.sums.push(sum.rows.clone());
+        }
+    }
+
+    /// Clears a column, and shows every sum on the way.
+    fn clear(&mut self, column: usize) -> u64 {
+        let mut system = std::mem::take(&mut self.system);
+        let mut work = 1 + system.len() as u64;
         let with = (0..system.len()).filter(|&k| system[k].odd.contains(&column));
         let lightest = |a: usize, b: usize| if system[b].slack < system[a].slack { b } else { a };
-        let Some(pivot) = with.reduce(lightest) else { continue };
-        let pivot = system.remove(pivot);
-        for sum in system.iter_mut().filter(|sum| sum.odd.contains(&column)) {
-            sum.odd = &sum.odd ^ &pivot.odd;
-            sum.rows = &sum.rows ^ &pivot.rows;
-            sum.right ^= pivot.right;
-            sum.slack += pivot.slack;
-            show(sum);
+        if let Some(pivot) = with.reduce(lightest) {
+            let pivot = system.remove(pivot);
+            for sum in system.iter_mut().filter(|sum| sum.odd.contains(&column)) {
+                work += (sum.odd.len() + pivot.odd.len() + sum.rows.len()) as u64;
+                sum.odd = &sum.odd ^ &pivot.odd;
+                sum.rows = &sum.rows ^ &pivot.rows;
+                sum.right ^= pivot.right;
+                sum.slack += pivot.slack;
+                self.show(sum);
+            }
+            system.retain(|sum| sum.slack < 1.0 - MARGIN && !sum.rows.is_empty());
         }
-        system.retain(|sum| sum.slack < 1.0 - MARGIN && !sum.rows.is_empty());
+        self.system = system;
+        work
+    }
+
+    fn cut(
+        &self,
+        sum: &BTreeSet<usize>,
+        rows: &[Row],
+        frame: &Frame,
+        x: &[f64],
+    ) -> (Option<GeneralCut>, u64) {
+        let half = Number::from_parts(IBig::ONE, 2_u32.into());
+        let mut total = Aggregate::default();
+        let mut work = 1;
+        for &place in sum {
+            let Whole { used, scale } = &self.wholes[place];
+            let y = if used.upper { scale * &half } else { -(scale * &half) };
+            work += rows[used.row].entries.len() as u64;
+            total.add_side(frame, (*used, &rows[used.row]), &y);
+        }
+        (plain(Class::ZeroHalf, &total, frame, x, &BTreeSet::new()), work)
     }
 }
 

@@ -136,7 +136,7 @@ impl Audit {
         }
         let tools = Tools {
             relaxation: Relaxation::new(&model).map_err(|error| error.to_string())?,
-            rounds: Rounds::new(&model),
+            rounds: Rounds::whole(&model),
             checker: Checker::new(&model),
             chooser: Chooser::new(&model, &[]),
             target,

@@ -148,6 +148,46 @@ fn many_leaves_without_a_point_are_told_from_few() {
     assert!(!has(&found(&trip(Form::Labels), &Settings::default()), empty));
 }
 
+/// Machines that run only where they are switched on: `x ≤ M y` with a flow that must be at least
+/// `least`. With M = 10⁷ and a flow of 10⁻¹⁰ each leaks through a switch that is off by less than any
+/// tolerance, and no point with the switch off holds exactly.
+fn switches(big: i64, least: &str) -> Rc<Model> {
+    let mut builder = ModelBuilder::new("switches", Sense::Minimise);
+    for _ in 0..4 {
+        let whole = model::Number::from;
+        let least = match least.split_once("e-") {
+            None => whole(least.parse::<i64>().unwrap()),
+            Some((digits, tens)) => {
+                let tens = 10_i64.pow(tens.parse().unwrap());
+                whole(digits.parse::<i64>().unwrap()) / whole(tens)
+            }
+        };
+        let flow = model::ColumnSpec {
+            lower: Some(least),
+            upper: Some(whole(5)),
+            cost: whole(0),
+            integer: false,
+        };
+        let x = builder.column(&[], &flow).unwrap();
+        let y = builder.column(&[], &spec((0, 1), 1, true)).unwrap();
+        builder.row(&[], row(&[(x, 1), (y, -big)], None, Some(0))).unwrap();
+    }
+    Rc::new(builder.build())
+}
+
+/// What leaks is not called a plan: the search says that it could not tell.
+#[test]
+fn flows_that_leak_through_large_switches_are_told_from_those_that_do_not() {
+    let numerics = |d: &Diagnosis| matches!(d, Diagnosis::Numerics { .. });
+    let leaking = searched(&switches(10_000_000, "1e-10"), &Settings::default());
+    let told = leaking.diagnosis(&leaking.measures());
+    assert!(has(&told, numerics), "{told:?} {:?}", leaking.summary());
+    assert!(!leaking.summary().checked);
+    let tight = searched(&switches(10, "1"), &Settings::default());
+    assert!(!has(&tight.diagnosis(&tight.measures()), numerics));
+    assert_eq!((tight.summary().incumbent, tight.summary().checked), (Some(4.0), true));
+}
+
 #[test]
 fn measures_count_every_node_and_leaf() {
     for form in [Form::Labels, Form::Flow] {

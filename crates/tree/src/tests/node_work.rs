@@ -5,7 +5,7 @@ use std::rc::Rc;
 use model::{ModelBuilder, Sense};
 
 use super::support::{Form, Random, best_trip, random_model, round_trip, row, run, spec, working};
-use crate::{Event, NodeWork, Settings, Status};
+use crate::{Class, Classes, Cuts, Event, NodeState, NodeWork, Settings, Status};
 
 /// Tightened bounds take nodes away, never solutions, and every leaf stays checked.
 #[test]
@@ -72,4 +72,51 @@ fn priorities_come_first() {
         };
         assert_eq!(first.map(name_of).as_deref(), Some(name));
     }
+}
+
+/// Each part of node work alone: the others count nothing, and what it counts is what the events say.
+#[test]
+fn each_part_is_switched_and_counted_alone() {
+    let none = NodeWork { propagation: false, fixing: false, lattice: false };
+    let parts = [
+        none,
+        NodeWork { propagation: true, ..none },
+        NodeWork { fixing: true, ..none },
+        NodeWork { lattice: true, ..none },
+        none,
+    ];
+    let mut all = [[0_u64; 5]; 5];
+    for seed in 0..40 {
+        let model = random_model(seed, 12, 0);
+        for (place, &node_work) in parts.iter().enumerate() {
+            let classes: Classes = [Class::Gomory, Class::Cover].into_iter().collect();
+            let cuts = Cuts { classes, every: 1, rounds: 2 };
+            let cuts = if place == 4 { cuts } else { Cuts::default() };
+            let settings = Settings { node_work, cuts, ..Settings::default() };
+            let (events, summary) = run(&model, &settings, u64::MAX);
+            let counts = summary.node_work;
+            let counted = [
+                u64::from(counts.closed),
+                counts.tightened,
+                counts.fixed,
+                u64::from(counts.stepped),
+                u64::from(counts.cut_off),
+            ];
+            all[place].iter_mut().zip(counted).for_each(|(sum, count)| *sum += count);
+            let unpriced = events.iter().filter(|event| {
+                matches!(event, Event::Solved { state: NodeState::Infeasible, iterations: 0, .. })
+            });
+            assert!(unpriced.count() >= counts.closed as usize, "seed {seed}");
+            assert!(counts.stepped <= summary.leaves_checked + summary.leaves_unchecked);
+        }
+    }
+    let used = all.map(|counts| counts.map(|count| count > 0));
+    let wanted = [
+        [false, false, false, false, false],
+        [true, true, false, false, false],
+        [false, false, true, false, false],
+        [false, false, false, true, false],
+        [false, false, false, false, true],
+    ];
+    assert_eq!(used, wanted, "{all:?}");
 }

@@ -2,9 +2,9 @@
 
 use std::rc::Rc;
 
-use model::Sense;
+use model::{ModelBuilder, Sense};
 
-use super::support::{Form, Random, finish, random_model, round_trip, rules};
+use super::support::{Form, Random, finish, random_model, round_trip, row, rules, run, spec};
 use crate::{Act, Acted, Branching, Event, Progress, Rule, Search, Selection, Settings, Status};
 
 /// Goes on to so many nodes more, or to the end.
@@ -112,4 +112,203 @@ fn limits_changed_while_it_stands_still_hold_when_it_goes_on() {
     assert_eq!(at(Some(Rule::Nodes(Some(14)))), (Status::Limit, 14));
     assert_eq!(at(Some(Rule::Nodes(None))).0, Status::Optimal);
     assert_eq!(at(Some(Rule::Iterations(Some(1)))).0, Status::Limit);
+}
+
+/// Every rule for branching, the one by hand among them, with every rule for the next node.
+fn pairs() -> Vec<(Branching, Selection)> {
+    let selections = [Selection::BestBound, Selection::DepthFirst, Selection::BestEstimate];
+    let by_hand = selections.map(|selection| (Branching::ByHand, selection));
+    let own = rules().into_iter().map(|settings| (settings.branching, settings.selection));
+    own.chain(by_hand).collect()
+}
+
+/// From one pair of rules to another after some nodes, and to the end: where a person is waited for,
+/// the first column that may be branched on is named.
+fn changed(
+    model: &Rc<model::Model>,
+    from: (Branching, Selection),
+    to: (Branching, Selection),
+    ticks: u64,
+) -> (Search, Vec<Acted>) {
+    let settings = Settings { branching: from.0, selection: from.1, ..Settings::default() };
+    let mut search = Search::new(Rc::clone(model), settings);
+    while search.advance(ticks) == Progress::Working {}
+    go_on(&mut search, 4, ticks);
+    search.act(Act::Rule(Rule::Branching(to.0)));
+    search.act(Act::Rule(Rule::Selection(to.1)));
+    search.run(None);
+    loop {
+        match search.advance(ticks) {
+            Progress::Finished => break,
+            Progress::Paused => name_a_column(&mut search),
+            Progress::Working | Progress::RootSolved => {}
+        }
+    }
+    let acted = search.take_acted();
+    (search, acted)
+}
+
+fn name_a_column(search: &mut Search) {
+    assert!(search.waits_for_a_branching());
+    let views = (1..).map(crate::NodeId).map_while(|node| search.inspect(node));
+    let mut held = views.filter(|view| view.state == crate::NodeState::Open && !view.ahead);
+    let view = held.next().unwrap();
+    let off = |column: &&model::ColumnId| (view.x[column.index()].fract() - 0.5).abs();
+    let column = view.branchable.iter().min_by(|a, b| off(a).total_cmp(&off(b)));
+    let (node, column) = (view.node, *column.unwrap());
+    search.act(Act::Branch { node, column });
+    search.run(None);
+}
+
+#[test]
+fn every_pair_of_rules_is_changed_into_every_other() {
+    let model = round_trip(&Random(3).distances(6), Form::Labels, Sense::Minimise);
+    let best = run(&model, &Settings::default(), u64::MAX).1.incumbent;
+    let (mut done, mut logs) = (0, std::collections::BTreeSet::new());
+    for from in pairs() {
+        for to in pairs().into_iter().filter(|to| *to != from) {
+            let (mut search, acted) = changed(&model, from, to, 700);
+            let (events, summary) = (search.take_events(), search.summary());
+            assert_eq!((summary.status, summary.incumbent), (Status::Optimal, best));
+            assert!(summary.checked, "{from:?} to {to:?}");
+            let took = |rule: &Rule| {
+                let rule = Act::Rule(rule.clone());
+                acted.iter().any(|acted| acted.act == rule && acted.refused.is_none())
+            };
+            let both = took(&Rule::Branching(to.0)) && took(&Rule::Selection(to.1));
+            assert!(both || summary.nodes <= 5, "{from:?} to {to:?}");
+            done += u32::from(both);
+            let settings = Settings { branching: from.0, selection: from.1, ..Settings::default() };
+            let mut again = Search::new(Rc::clone(&model), settings);
+            acted.iter().for_each(|one| again.replay(one.after, one.act.clone()));
+            finish(&mut again, 90);
+            assert_eq!(again.take_events(), events, "{from:?} to {to:?}: the replay differs");
+            logs.insert(format!("{events:?}"));
+        }
+    }
+    assert_eq!(done, 15 * 14);
+    assert!(logs.len() > 20, "{} trees differ", logs.len());
+}
+
+/// Things of two variables to be carried, in two respects: x and y have as much of everything.
+fn two_variables(seed: u64) -> Rc<model::Model> {
+    let mut random = Random(seed);
+    let mut builder = ModelBuilder::new("two", Sense::Maximise);
+    let mut rows = [Vec::new(), Vec::new()];
+    for name in ["x", "y"] {
+        builder.variable(name, false);
+        for _ in 0..8 {
+            let cost = 20 + random.below(30);
+            let column = builder.column(&[], &spec((0, 1), cost, true)).unwrap();
+            rows.iter_mut().for_each(|row| row.push((column, 15 + random.below(40))));
+        }
+    }
+    for entries in &rows {
+        let all: i64 = entries.iter().map(|(_, a)| a).sum();
+        builder.row(&[], row(entries, None, Some(all / 2))).unwrap();
+    }
+    Rc::new(builder.build())
+}
+
+#[test]
+fn priorities_are_changed_during_a_run() {
+    let large = |model: &Rc<model::Model>| run(model, &Settings::default(), u64::MAX).1.nodes > 40;
+    let model = (0..50).map(two_variables).find(large).unwrap();
+    let branched_on = |events: &[Event]| -> Vec<String> {
+        let columns = events.iter().filter_map(|event| match event {
+            Event::Solved { branch_column, .. } => *branch_column,
+            _ => None,
+        });
+        let variable = |c: model::ColumnId| model.columns()[c.index()].variable;
+        columns.map(|c| model.variables()[variable(c).index()].name.clone()).collect()
+    };
+    let mut firsts = Vec::new();
+    for name in ["x", "y"] {
+        let mut search = Search::new(Rc::clone(&model), Settings::default());
+        while search.advance(1_000) == Progress::Working {}
+        go_on(&mut search, 3, 1_000);
+        let mut events = search.take_events();
+        search.act(Act::Rule(Rule::Priority(vec![name.to_owned()])));
+        finish(&mut search, 1_000);
+        let next = search.take_events();
+        firsts.extend(branched_on(&next).first().cloned());
+        events.extend(next);
+        let mut again = Search::new(Rc::clone(&model), Settings::default());
+        for one in search.take_acted() {
+            assert_eq!(one.refused, None);
+            again.replay(one.after, one.act);
+        }
+        finish(&mut again, 77);
+        assert_eq!(again.take_events(), events, "the replay differs");
+    }
+    assert_eq!(firsts, ["x", "y"]);
+}
+
+/// A search that its limit of nodes has ended goes on where it was: the same events as one that had
+/// the higher limit from the start, and as its replay.
+#[test]
+fn a_raised_limit_lets_an_ended_search_go_on() {
+    let model = round_trip(&Random(3).distances(7), Form::Labels, Sense::Minimise);
+    let whole = run(&model, &Settings::default(), u64::MAX);
+    for limit in [1, 2, 10, 25] {
+        let limited = Settings { node_limit: Some(limit), ..Settings::default() };
+        let mut search = Search::new(Rc::clone(&model), limited.clone());
+        finish(&mut search, 1_000);
+        let at = (search.summary().status, search.summary().nodes);
+        assert_eq!(at, (Status::Limit, limit));
+        let iterations = search.work().iterations;
+        search.act(Act::Rule(Rule::Nodes(Some(limit))));
+        assert!(search.is_over(), "no more nodes than before are allowed");
+        search.act(Act::Rule(Rule::Nodes(Some(limit + 5))));
+        assert!(!search.is_over() && search.advance(1_000) == Progress::Paused);
+        finish(&mut search, 1_000);
+        assert_eq!(search.summary().nodes, limit + 5);
+        search.act(Act::Rule(Rule::Nodes(None)));
+        finish(&mut search, 1_000);
+        assert!(search.work().iterations > iterations, "it went on");
+        assert_eq!((search.take_events(), search.summary()), whole, "after {limit} nodes");
+        let mut again = Search::new(Rc::clone(&model), limited);
+        for one in search.take_acted() {
+            assert_eq!(one.refused.is_some(), one.act == Act::Rule(Rule::Nodes(Some(limit))));
+            if one.refused.is_none() {
+                again.replay(one.after, one.act);
+            }
+        }
+        finish(&mut again, 77);
+        assert_eq!((again.take_events(), again.summary()), whole, "the replay differs");
+    }
+}
+
+/// Stopped at each plan that is better than all before, a search finds what it finds in one go.
+#[test]
+fn it_stands_still_at_each_better_plan() {
+    let mut seen = 0;
+    for seed in 0..12 {
+        let model = random_model(seed, 14, 0);
+        let settings = Settings { selection: Selection::DepthFirst, ..Settings::default() };
+        let whole = run(&model, &settings, u64::MAX);
+        let plans = whole.0.iter().filter(|e| matches!(e, Event::Incumbent { .. })).count();
+        let mut search = Search::new(Rc::clone(&model), settings);
+        while search.advance(300) == Progress::Working {}
+        let (mut stops, mut events) = (0, search.take_events());
+        let mut told = events.iter().filter(|e| matches!(e, Event::Incumbent { .. })).count();
+        loop {
+            search.run_to_a_plan();
+            let mut progress = search.advance(300);
+            while progress == Progress::Working {
+                progress = search.advance(300);
+            }
+            let new = search.take_events();
+            told += new.iter().filter(|e| matches!(e, Event::Incumbent { .. })).count();
+            events.extend(new);
+            if progress != Progress::Paused {
+                break;
+            }
+            stops += 1;
+            assert_eq!(told, stops, "seed {seed}: one plan a stop");
+        }
+        assert_eq!((told, events), (plans, whole.0), "seed {seed}");
+        seen += stops;
+    }
+    assert!(seen > 12, "{seen} plans");
 }

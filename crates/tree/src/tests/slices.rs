@@ -5,7 +5,9 @@ use std::rc::Rc;
 use model::{Model, Sense};
 
 use super::support::{Form, Random, finish, random_model, round_trip, rules, run, working};
-use crate::{Event, Progress, Search, Settings};
+use crate::{
+    Branching, Classes, Cuts, Event, Heuristics, NodeWork, Progress, Search, Selection, Settings,
+};
 
 fn models() -> Vec<(String, Rc<Model>)> {
     let costs = Random(21).distances(8);
@@ -70,6 +72,39 @@ fn pausing_anywhere_loses_nothing() {
             }
         }
         assert_eq!(search.take_events(), events, "{name}");
+    }
+}
+
+/// Paused and let go again between any two steps, bare and with everything on.
+#[test]
+fn pausing_at_every_step_loses_nothing() {
+    let all = Settings {
+        branching: Branching::Reliability,
+        selection: Selection::BestEstimate,
+        node_work: NodeWork { propagation: true, fixing: true, lattice: true },
+        cuts: Cuts { classes: Classes::all(), every: 2, rounds: 1 },
+        heuristics: Heuristics { rounding: true, trip: true, diving: true, pump: true },
+        ..Settings::default()
+    };
+    for (name, model) in models() {
+        for settings in [Settings::default(), all.clone()] {
+            let (events, summary) = run(&model, &settings, u64::MAX);
+            let mut search = Search::new(Rc::clone(&model), settings);
+            let mut pauses = 0;
+            loop {
+                match search.advance(1) {
+                    Progress::Finished => break,
+                    Progress::RootSolved | Progress::Paused => search.run(None),
+                    Progress::Working => {
+                        search.pause();
+                        pauses += u32::from(search.advance(1) == Progress::Paused);
+                        search.run(None);
+                    }
+                }
+            }
+            assert!(pauses > 20, "{name}: {pauses} pauses");
+            assert_eq!((search.take_events(), search.summary()), (events, summary), "{name}");
+        }
     }
 }
 

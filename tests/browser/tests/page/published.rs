@@ -36,14 +36,24 @@ async fn until(
     text(browser, "A", "status").await
 }
 
-/// kroA100 (TSPLIB, Reinelt 1991; optimum 21282) by subtours on demand and blossoms.
+/// Six symmetric round trips of TSPLIB (Reinelt 1991) with their published optima, by subtours on
+/// demand and blossoms.
+const TRIPS: [(&str, &str); 6] = [
+    ("eil51", "426"),
+    ("berlin52", "7,542"),
+    ("st70", "675"),
+    ("eil76", "538"),
+    ("rat99", "1,211"),
+    ("kroA100", "21,282"),
+];
+
 #[tokio::test(flavor = "multi_thread")]
-async fn a_hundred_stops_are_solved_to_the_published_optimum() -> Outcome<()> {
+async fn up_to_a_hundred_stops_are_solved_to_the_published_optimum() -> Outcome<()> {
     if !long() {
         return Ok(());
     }
     let data = std::env::var("HULLWARD_DATA")?;
-    for (name, optimum) in [("rat99", "1,211"), ("kroA100", "21,282")] {
+    for (name, optimum) in TRIPS {
         let file = std::fs::read_to_string(format!("{data}/tsplib/{name}.tsp"))?;
         let scenario = format!(
             "hullward = 1\n[instance]\nreader = \"tsplib\"\ntext = '''\n{file}\n'''\n\

@@ -139,7 +139,7 @@ fn toggle(panel: &UseStateHandle<bool>) -> Callback<MouseEvent> {
 fn save(document: &Document, digest: Option<String>) -> Callback<()> {
     let document = document.clone();
     Callback::from(move |()| {
-        download(&file_name(&document.title), &document.file_with(digest.as_ref()));
+        download(&file_name(&document.title), document.file_with(digest.as_ref()).as_str());
     })
 }
 

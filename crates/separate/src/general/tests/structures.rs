@@ -9,7 +9,7 @@ use model::{
 use rand_core::Rng;
 use rand_pcg::Pcg64Mcg;
 
-use super::super::{Class, Conflicts, Frame, OddCuts, Trips, zero_half};
+use super::super::{Class, Conflicts, Frame, GeneralCut, OddCuts, Trips, ZeroHalf};
 use super::{Drawn, below, check, drawn};
 
 fn sixteenths(random: &mut Pcg64Mcg, columns: usize, most: u32) -> Vec<f64> {
@@ -31,6 +31,20 @@ fn small(random: &mut Pcg64Mcg, columns: usize, rows: usize) -> Drawn {
     };
     drawn.rows = (0..rows).map(row).collect();
     drawn
+}
+
+/// All zero-half cuts at a point.
+fn zero_half(rows: &[Row], frame: &Frame, x: &[f64]) -> Vec<GeneralCut> {
+    let (mut search, mut found) = (ZeroHalf::new(frame, x), Vec::new());
+    while search.step(rows, (frame, x), &mut found).is_some() {}
+    found
+}
+
+/// The whole conflict graph at a point.
+fn conflicts(rows: &[Row], frame: &Frame, x: &[f64]) -> Conflicts {
+    let mut graph = Conflicts::new(frame, x.len());
+    while graph.step(rows, frame, x).is_some() {}
+    graph
 }
 
 #[test]
@@ -70,7 +84,7 @@ fn cliques_and_holes_hold_at_every_whole_point() {
         let points = drawn.points();
         for _ in 0..12 {
             let x: Vec<f64> = sixteenths(&mut random, 7, 1).iter().map(|x| 0.3 + x * 0.4).collect();
-            let graph = Conflicts::new(&drawn.rows, &drawn.frame, &x);
+            let graph = conflicts(&drawn.rows, &drawn.frame, &x);
             for start in 0..graph.len() {
                 let found = graph.cliques(start, &x);
                 cuts[0] += found.len();

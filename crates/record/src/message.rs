@@ -13,8 +13,10 @@ use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
 use crate::study::Report;
 use crate::typeset::Typeset;
 
+mod jobs;
 mod listing;
 
+pub use jobs::{LogJob, StudyJob};
 pub use listing::CatalogueEntry;
 
 /// The number of a run of a lane: replies of an older run are dropped by the page.
@@ -90,28 +92,6 @@ pub struct LaneJob {
     pub settings: Run,
     /// The scenario's seed.
     pub seed: u64,
-}
-
-/// What a log that is handed over says of itself.
-#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
-pub struct LogJob {
-    /// The text of the scenario that gives the same log.
-    pub scenario: String,
-    /// The instance, by place.
-    pub instance: u32,
-    /// The rival, by place.
-    pub rival: u32,
-}
-
-/// A study to make.
-#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
-pub struct StudyJob {
-    /// The run that replies carry.
-    pub run: RunNumber,
-    /// The text of a scenario whose first study is made.
-    pub scenario: String,
-    /// The instance, by place.
-    pub instance: u32,
 }
 
 /// Rivals whose data are to be found in an instance.

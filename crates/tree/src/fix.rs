@@ -17,7 +17,7 @@ use crate::target::signed;
 /// each costs a proof.
 const MOST_FIXED: usize = 50;
 /// Entries of rows that these proofs look at, at most: fewer bounds are tightened on large models.
-const MOST_WORK: usize = 2_000_000;
+const MOST_WORK: usize = 500_000;
 /// How much of a step is forgiven before its proof.
 const NEAR: f64 = 1e-9;
 

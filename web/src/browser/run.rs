@@ -5,7 +5,7 @@ use std::cell::RefCell;
 use std::collections::VecDeque;
 
 use gloo_timers::callback::Timeout;
-use record::message::{Envelope, LaneJob, Reply, Request, RunNumber};
+use record::message::{Acted, Envelope, LaneJob, Reply, Request, RunNumber};
 use record::opinion::Opinion;
 use record::results::{Judgement, SearchReport, Status};
 use record::scenario::Rival;
@@ -198,12 +198,7 @@ impl LaneRun {
                 self.watchdog = None;
                 Some(LaneAction::Failed(error))
             }
-            Reply::Acted(acted) => {
-                // Of a search that has ended only what lets it go on takes effect.
-                let goes_on = acted.refused.is_none() && std::mem::take(&mut self.limited);
-                let refused = refusal(&acted, &self.columns).map(LaneAction::Notice);
-                refused.or_else(|| goes_on.then_some(LaneAction::Asked(Phase::Running)))
-            }
+            Reply::Acted(acted) => self.acted(&acted),
             Reply::Log(Err(why)) => Some(LaneAction::Notice(format!("No log was saved: {why}."))),
             Reply::Audited(found) => {
                 let words = sentences(&found).join(" ");
@@ -225,6 +220,13 @@ impl LaneRun {
             | Reply::Guide(_)
             | Reply::Catalogue(_) => None,
         }
+    }
+
+    /// What became of an act. Of a search that has ended only what lets it go on takes effect.
+    fn acted(&mut self, acted: &Acted) -> Option<LaneAction> {
+        let goes_on = acted.refused.is_none() && std::mem::take(&mut self.limited);
+        let refused = refusal(acted, &self.columns).map(LaneAction::Notice);
+        refused.or_else(|| goes_on.then_some(LaneAction::Asked(Phase::Running)))
     }
 
     fn settled(&mut self) -> crate::state::tree::Tally {

@@ -106,19 +106,20 @@ fn words(model: &Model, diagnosis: &Diagnosis) -> (DiagnosisKind, String) {
             (DiagnosisKind::ManyInfeasibleLeaves, words)
         }
         Diagnosis::Numerics { unproved, unsolved, leaves, rounded } => {
-            let (unproved, unsolved, leaves) = (count(*unproved), count(*unsolved), count(*leaves));
-            let plan = if *rounded {
-                ", and the best plan meets a row only within the tolerance"
-            } else {
-                ""
-            };
-            let words = format!(
-                "{unproved} of {leaves} leaves could not be proved and {unsolved} nodes not be \
-                 solved{plan}: look at the range of the coefficients"
-            );
+            let words = numerics([*unproved, *unsolved, *leaves], *rounded);
             (DiagnosisKind::Numerics, words)
         }
     }
+}
+
+fn numerics(counts: [u32; 3], rounded: bool) -> String {
+    let [unproved, unsolved, leaves] = counts.map(count);
+    let plan = ", and the best plan meets a row only within the tolerance";
+    let plan = if rounded { plan } else { "" };
+    format!(
+        "{unproved} of {leaves} leaves could not be proved and {unsolved} nodes not be solved{plan}: \
+         look at the range of the coefficients"
+    )
 }
 
 fn copies(model: &Model, labels: &[LabelId], [idle, branchings]: [String; 2]) -> String {

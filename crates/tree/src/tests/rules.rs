@@ -222,7 +222,7 @@ fn priorities_are_changed_during_a_run() {
         let variable = |c: model::ColumnId| model.columns()[c.index()].variable;
         columns.map(|c| model.variables()[variable(c).index()].name.clone()).collect()
     };
-    let mut firsts = Vec::new();
+    let mut shares = Vec::new();
     for name in ["x", "y"] {
         let mut search = Search::new(Rc::clone(&model), Settings::default());
         while search.advance(1_000) == Progress::Working {}
@@ -231,7 +231,9 @@ fn priorities_are_changed_during_a_run() {
         search.act(Act::Rule(Rule::Priority(vec![name.to_owned()])));
         finish(&mut search, 1_000);
         let next = search.take_events();
-        firsts.extend(branched_on(&next).first().cloned());
+        let branched = branched_on(&next);
+        let own = branched.iter().filter(|variable| *variable == "x").count();
+        shares.push(own as f64 / branched.len() as f64);
         events.extend(next);
         let mut again = Search::new(Rc::clone(&model), Settings::default());
         for one in search.take_acted() {
@@ -241,7 +243,8 @@ fn priorities_are_changed_during_a_run() {
         finish(&mut again, 77);
         assert_eq!(again.take_events(), events, "the replay differs");
     }
-    assert_eq!(firsts, ["x", "y"]);
+    // At a node where only the other variable is fractional there is no choice.
+    assert!(shares[0] > shares[1], "{shares:?} of the branchings are on x");
 }
 
 /// A search that its limit of nodes has ended goes on where it was: the same events as one that had

@@ -270,8 +270,25 @@ fn highs(problem: &Named) -> Found {
     let value = optimal.then(|| solved.objective_value());
     drop(solved); // the report is written out when the model is gone
     let report = std::fs::read_to_string(&log).unwrap_or_default();
-    let nodes = report.lines().find_map(|line| line.trim().strip_prefix("Nodes"));
-    let nodes = nodes.and_then(|rest| rest.split_whitespace().next()?.parse().ok());
     let _ = std::fs::remove_file(&log);
-    Found { seconds, nodes: nodes.unwrap_or(f64::NAN), iterations: 0, value, root }
+    Found { seconds, nodes: nodes_of(&report).unwrap_or(f64::NAN), iterations: 0, value, root }
+}
+
+/// The nodes that a report tells of at its end: `Nodes  1`. The table above it has a column of that
+/// name too.
+fn nodes_of(report: &str) -> Option<f64> {
+    let told = report.lines().filter_map(|line| line.trim().strip_prefix("Nodes"));
+    told.filter_map(|rest| rest.split_whitespace().next()?.parse().ok()).next_back()
+}
+
+#[cfg(test)]
+mod tests {
+    /// The head of the table was taken for the count, which it is not: every count was no number.
+    #[test]
+    fn nodes_are_read_from_the_end_of_a_report() {
+        let report = "        Nodes      |    B&B Tree     |   Work\n     0       0\n\nSolving report\n  \
+                      Status            Optimal\n  Nodes             17\n  LP iterations     36 (total)\n";
+        assert_eq!(super::nodes_of(report), Some(17.0));
+        assert_eq!(super::nodes_of("  Nodes | x"), None);
+    }
 }

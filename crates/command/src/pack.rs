@@ -1,13 +1,11 @@
-//! The regression pack: a scenario with what its rivals gave, as one JSON object, so that whoever
-//! builds the production model can see the same again; and the drift check: a new instance against
-//! what was recorded.
+//! The regression pack run again, and the drift check: a new instance against what was recorded.
 
 use std::io::{Result, Write};
 
 use record::file;
-use record::results::{RivalResult, Status, digest};
+use record::pack::{Expected, Pack};
 use record::scenario::{InstanceText, Scenario};
-use serde_json::{Value, json};
+use report::drift::{beyond, differences};
 
 use crate::complain::complain;
 use crate::ending::Ending;
@@ -15,57 +13,10 @@ use crate::options::DriftOptions;
 use crate::run::run_one;
 use crate::source;
 
-/// How far a bound or an optimum may be away, relative to its size, and still count as the same.
-const TOLERANCE: f64 = 1e-6;
-
-/// What is compared of a rival, with the words for it.
-const MEASURES: [(&str, &str); 7] = [
-    ("rows", "rows"),
-    ("columns", "columns"),
-    ("nonzeros", "non-zeros"),
-    ("root_bound", "root bound"),
-    ("optimum", "optimum"),
-    ("smallest_decade", "smallest power of ten among coefficients"),
-    ("largest_decade", "largest power of ten among coefficients"),
-];
-
-/// The pack of a scenario whose rivals were run.
-pub(crate) fn text(scenario: &Scenario, results: &[RivalResult]) -> String {
-    let pack = json!({
-        "hullward_pack": 1,
-        "engine": engine::VERSION,
-        "tolerance": TOLERANCE,
-        "digest": digest(results),
-        "scenario": file::print(scenario),
-        "expected": results.iter().map(expected).collect::<Vec<_>>(),
-    });
-    format!("{pack:#}\n")
-}
-
-fn expected(one: &RivalResult) -> Value {
-    let decades = one.families.iter().flat_map(|family| family.decades.keys());
-    let decades: Vec<i32> = decades.filter_map(|decade| decade.parse().ok()).collect();
-    let root = one.root.as_ref();
-    let solved = one.search.as_ref().filter(|_| one.status == Status::Optimal);
-    json!({
-        "instance": one.instance,
-        "rival": one.rival,
-        "title": one.title,
-        "rows": one.rows,
-        "columns": one.columns,
-        "nonzeros": one.nonzeros,
-        "root_bound": root.and_then(|root| root.bound),
-        "checked_bound": root.and_then(|root| root.checked_bound.clone()),
-        "optimum": solved.and_then(|search| search.incumbent),
-        "smallest_decade": decades.iter().min(),
-        "largest_decade": decades.iter().max(),
-    })
-}
-
-/// A pack that was read.
-struct Pack {
+/// A pack with its scenario read.
+struct Opened {
     scenario: Scenario,
-    expected: Vec<Value>,
+    expected: Vec<Expected>,
 }
 
 /// Runs a pack again, or holds a new instance against it.
@@ -87,39 +38,37 @@ pub(crate) fn drift(
     }
 }
 
-fn read(name: &str, err: &mut dyn Write) -> Result<std::result::Result<Pack, String>> {
+fn read(name: &str, err: &mut dyn Write) -> Result<std::result::Result<Opened, String>> {
     let text = match source::load(name) {
         Ok(source) => source.text,
         Err(message) => return Ok(Err(message)),
     };
-    let Ok(pack) = serde_json::from_str::<Value>(&text) else {
-        return Ok(Err("this is no pack: write one with hullward write --as pack".to_owned()));
+    let pack: Pack = match serde_json::from_str(&text) {
+        Ok(pack) => pack,
+        Err(why) => {
+            return Ok(Err(format!(
+                "this is no pack: {why}; write one with hullward write --as pack"
+            )));
+        }
     };
-    let (Some(scenario), Some(expected)) = (pack["scenario"].as_str(), pack["expected"].as_array())
-    else {
-        return Ok(Err("this is no pack: it lacks \"scenario\" or \"expected\"".to_owned()));
-    };
-    let parsed = file::parse(scenario);
+    let parsed = file::parse(&pack.scenario);
     complain(err, name, None, &parsed.complaints)?;
     Ok(parsed
         .scenario
-        .map(|scenario| Pack { scenario, expected: expected.clone() })
+        .map(|scenario| Opened { scenario, expected: pack.expected })
         .ok_or_else(|| "its scenario cannot be read".to_owned()))
 }
 
 /// Runs everything again and says what differs.
-fn again(pack: &Pack, out: &mut dyn Write) -> Result<Ending> {
+fn again(pack: &Opened, out: &mut dyn Write) -> Result<Ending> {
     let mut differ = 0;
     let rivals = pack.scenario.rivals.len().max(1);
     for (place, before) in pack.expected.iter().enumerate() {
         let (_, one) = run_one(&pack.scenario, (place / rivals, place % rivals));
-        let now = expected(&one);
-        for (key, words) in MEASURES {
-            if !same(&before[key], &now[key]) {
-                differ += 1;
-                let who = who(&now);
-                writeln!(out, "{who}: {words} {} in place of {}", now[key], before[key])?;
-            }
+        let now = Expected::of(&one);
+        for words in differences(before, &now) {
+            differ += 1;
+            writeln!(out, "{}: {words}", who(&now))?;
         }
     }
     if differ == 0 {
@@ -129,21 +78,13 @@ fn again(pack: &Pack, out: &mut dyn Write) -> Result<Ending> {
     Ok(Ending::Broken)
 }
 
-fn same(before: &Value, now: &Value) -> bool {
-    match (before.as_f64(), now.as_f64()) {
-        (Some(before), Some(now)) => (before - now).abs() <= TOLERANCE * (1.0 + before.abs()),
-        _ => before == now,
-    }
-}
-
-fn who(of: &Value) -> String {
-    let word = |key: &str| of[key].as_str().unwrap_or_default().to_owned();
-    let instance = word("instance");
-    if instance.is_empty() { word("rival") } else { format!("{} on {instance}", word("rival")) }
+fn who(of: &Expected) -> String {
+    let Expected { rival, instance, .. } = of;
+    if instance.is_empty() { rival.clone() } else { format!("{rival} on {instance}") }
 }
 
 /// Every rival on a new instance, against the least and the most that were recorded of it.
-fn held(pack: Pack, text: String, out: &mut dyn Write) -> Result<Ending> {
+fn held(pack: Opened, text: String, out: &mut dyn Write) -> Result<Ending> {
     let mut scenario = pack.scenario;
     let bind = scenario.instance.take().map(|before| before.bind).unwrap_or_default();
     scenario.instance = Some(InstanceText { text, bind, ..InstanceText::default() });
@@ -156,30 +97,15 @@ fn held(pack: Pack, text: String, out: &mut dyn Write) -> Result<Ending> {
             ending = Ending::Wrong;
             continue;
         }
-        let now = expected(&one);
-        let before = pack.expected.iter().filter(|before| before["rival"] == now["rival"]);
-        let before: Vec<&Value> = before.collect();
-        let beyond: Vec<String> = MEASURES
-            .iter()
-            .filter_map(|(key, words)| outside(words, &before, (key, &now[*key])))
-            .collect();
-        if beyond.is_empty() {
+        let now = Expected::of(&one);
+        let before = pack.expected.iter().filter(|before| before.rival == now.rival);
+        let outside = beyond(&before.collect::<Vec<_>>(), &now);
+        if outside.is_empty() {
             writeln!(out, "{}: within what was recorded", one.rival)?;
         }
-        for words in beyond {
+        for words in outside {
             writeln!(out, "{}: {words}", one.rival)?;
         }
     }
     Ok(ending)
-}
-
-/// A measure that lies outside of what was recorded, in words.
-fn outside(words: &str, before: &[&Value], (key, now): (&str, &Value)) -> Option<String> {
-    let now = now.as_f64()?;
-    let mut known: Vec<f64> = before.iter().filter_map(|before| before[key].as_f64()).collect();
-    known.sort_by(f64::total_cmp);
-    let (low, high) = (known.first().copied()?, known.last().copied()?);
-    let slack = TOLERANCE * (1.0 + high.abs());
-    (now < low - slack || now > high + slack)
-        .then(|| format!("{words} {now}, outside of the recorded {low} to {high}"))
 }

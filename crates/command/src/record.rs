@@ -6,6 +6,7 @@ use std::io::{Result, Write};
 use engine::native::instance_title;
 use record::file;
 use record::link;
+use record::pack::Pack;
 use record::results::RivalResult;
 use record::scenario::{Scenario, letter};
 use record::study::Report;
@@ -14,7 +15,7 @@ use report::decision::{self, Evidence};
 
 use crate::ending::Ending;
 use crate::options::Form;
-use crate::pack;
+
 use crate::run::{run_one, run_study};
 
 /// The record of a scenario in one of its forms, and how the runs ended; rivals that could not be run
@@ -38,7 +39,7 @@ pub(crate) fn record(
         }
     }
     if form == Form::Pack {
-        return Ok((pack::text(scenario, &results), ending));
+        return Ok((report::pack::json(&Pack::new(engine::VERSION, scenario, &results)), ending));
     }
     if form == Form::Csv {
         return Ok((csv(&results), ending));

@@ -14,6 +14,7 @@
 //! | [`opinion`] | the relaxation that a second LP code is asked about, and its answer |
 //! | [`typeset`] | a formulation set as mathematics |
 //! | [`handover`] | a rival handed over to others |
+//! | [`pack`] | a scenario with what its rivals gave, to be held to |
 //! | [`wire`] | messages as bytes |
 //! | [`results`] | the JSON objects of `hullward run --json`, and their digest |
 //! | [`study`] | what studies find |
@@ -34,6 +35,7 @@ pub mod link;
 pub mod log;
 pub mod message;
 pub mod opinion;
+pub mod pack;
 pub mod place;
 pub mod results;
 pub mod scenario;

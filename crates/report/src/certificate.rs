@@ -59,12 +59,12 @@ fn pairs(pairs: &[(String, String)]) -> String {
     list(pairs, |(name, number)| format!("[{},{}]", text(name), text(number)))
 }
 
-fn list<T>(items: &[T], one: impl Fn(&T) -> String) -> String {
+pub(crate) fn list<T>(items: &[T], one: impl Fn(&T) -> String) -> String {
     format!("[{}]", items.iter().map(one).collect::<Vec<_>>().join(","))
 }
 
 /// A string in JSON (RFC 8259).
-fn text(text: &str) -> String {
+pub(crate) fn text(text: &str) -> String {
     let mut out = String::from("\"");
     for letter in text.chars() {
         match letter {

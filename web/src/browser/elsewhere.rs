@@ -13,6 +13,7 @@ use crate::browser::clock;
 use crate::browser::worker::{FromWorker, WorkerHandle};
 use crate::state::board::{Board, BoardAction};
 use crate::state::outcomes::{Kept, Outcome};
+use crate::state::pointer::Shared;
 
 /// A rival on an instance.
 #[derive(Debug, Clone)]
@@ -124,12 +125,23 @@ impl Elsewhere {
             return;
         }
         match reply {
+            Reply::Understood(report) => {
+                if let Some((_, outcome)) = &mut self.0.borrow_mut().now {
+                    outcome.found.0 = Some(Shared::new(*report));
+                }
+            }
             Reply::Root(root) => {
                 let search = self.0.borrow().now.as_ref().is_some_and(|(job, _)| job.search);
+                let of_root = |before: Outcome| {
+                    let mut outcome = Outcome::of_root(&root);
+                    outcome.found.0 = before.found.0;
+                    outcome
+                };
                 if search && root.status == Status::Optimal {
-                    self.search(Outcome::of_root(&root));
+                    let before = self.0.borrow().now.as_ref().map(|(_, outcome)| outcome.clone());
+                    self.search(of_root(before.unwrap_or_default()));
                 } else {
-                    self.finish(|_| Outcome::of_root(&root));
+                    self.finish(of_root);
                 }
             }
             Reply::Paused(report) | Reply::Done(report) => {

@@ -8,6 +8,7 @@ pub(crate) mod handover;
 pub(crate) mod kept;
 pub(crate) mod meanings;
 pub(crate) mod opinions;
+pub(crate) mod packs;
 pub(crate) mod proving;
 pub(crate) mod run;
 pub(crate) mod session;

@@ -11,6 +11,7 @@ use crate::state::instances::InstanceEdit;
 use crate::state::lane::LaneId;
 use crate::state::mps::looks_like_mps;
 use crate::state::pointer::Shared;
+use crate::state::recorded::Recorded;
 use crate::state::same::Made;
 use crate::state::steer::Steer;
 use record::file::{looks_like_a_scenario, parse};
@@ -99,6 +100,8 @@ pub(crate) struct Document {
     pub(crate) rest: Shared<Scenario>,
     /// What it was made with, where it was opened with results.
     pub(crate) made: Option<Made>,
+    /// The pack that it was opened from, or is held against.
+    pub(crate) pack: Option<Shared<Recorded>>,
     /// What can be undone and redone.
     pub(crate) history: Shared<History>,
     next: u32,
@@ -109,6 +112,10 @@ pub(crate) struct Document {
 pub(crate) enum DocumentAction {
     /// A scenario is opened in place of this one.
     Open(Box<Scenario>),
+    /// A pack is opened: its scenario in place of this one, and held against what was recorded.
+    OpenPack(Box<Scenario>, Box<Recorded>),
+    /// What was recorded is no longer of interest.
+    ForgetPack,
     /// The last change is taken back.
     Undo,
     /// What was taken back is done again.
@@ -174,6 +181,7 @@ impl Document {
             catalogue: Shared::new(Vec::new()),
             rest: Shared::new(scenario),
             made: None,
+            pack: None,
             history: Shared::new(History::default()),
             next,
         };
@@ -333,6 +341,12 @@ impl Document {
         let mut document = (*self).clone();
         match action {
             DocumentAction::Open(scenario) => return document.open_another(*scenario).into(),
+            DocumentAction::OpenPack(scenario, recorded) => {
+                let mut opened = document.open_another(*scenario);
+                opened.pack = Some(Shared::new(*recorded));
+                return opened.into();
+            }
+            DocumentAction::ForgetPack => document.pack = None,
             DocumentAction::Undo | DocumentAction::Redo => return self,
             DocumentAction::Notes(notes) => document.notes = Shared::new(notes),
             DocumentAction::Title(title) => {

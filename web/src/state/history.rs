@@ -83,7 +83,7 @@ fn change(document: &Document, action: &DocumentAction) -> Option<Change> {
         DocumentAction::Add(_) => done("rival that joined"),
         DocumentAction::Remove(_) => done("rival that left"),
         DocumentAction::Family(..) => done("state of a family"),
-        DocumentAction::Open(_) => done("scenario that was opened"),
+        DocumentAction::Open(_) | DocumentAction::OpenPack(..) => done("scenario that was opened"),
         DocumentAction::Bind(..) => done("choice of data"),
         DocumentAction::Instances(edit @ InstanceEdit::Rename(_)) => typed(edit.words()),
         DocumentAction::Instances(edit) => done(edit.words()),
@@ -94,6 +94,7 @@ fn change(document: &Document, action: &DocumentAction) -> Option<Change> {
         DocumentAction::Read(..)
         | DocumentAction::Catalogue(_)
         | DocumentAction::Bound(_)
+        | DocumentAction::ForgetPack
         | DocumentAction::Undo
         | DocumentAction::Redo => None,
     }

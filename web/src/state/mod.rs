@@ -19,6 +19,7 @@ pub(crate) mod outcomes;
 pub(crate) mod outline;
 pub(crate) mod places;
 pub(crate) mod pointer;
+pub(crate) mod recorded;
 pub(crate) mod same;
 pub(crate) mod share;
 pub(crate) mod span;

@@ -8,6 +8,7 @@ use record::scenario::{InstanceText, Rival};
 use crate::state::board::Board;
 use crate::state::lane::{Lane, Phase};
 use crate::state::pointer::Shared;
+use crate::state::same::{FoundInLane, found_in};
 
 /// Results kept at most; the oldest go first.
 pub(crate) const MOST: usize = 200;
@@ -25,6 +26,8 @@ pub(crate) struct Outcome {
     pub(crate) words: &'static str,
     /// Whether there is nothing left to do.
     pub(crate) over: bool,
+    /// All that is known of it.
+    pub(crate) found: FoundInLane,
 }
 
 impl Outcome {
@@ -40,6 +43,7 @@ impl Outcome {
             _ => {}
         }
         (outcome.best, outcome.nodes) = (lane.incumbent(), lane.nodes());
+        outcome.found = found_in(lane);
         Some(outcome)
     }
 
@@ -51,7 +55,8 @@ impl Outcome {
             Status::Unbounded => ("unbounded", true),
             Status::Limit | Status::Error => ("root not solved", true),
         };
-        Self { root: root.bound, words, over, ..Self::default() }
+        let found = (None, Some(Shared::new(root.clone())), None);
+        Self { root: root.bound, words, over, found, ..Self::default() }
     }
 
     /// With what the search gave.
@@ -62,7 +67,10 @@ impl Outcome {
             Status::Unbounded => ("unbounded", true),
             Status::Limit | Status::Error => ("stopped", false),
         };
-        Self { best: search.incumbent, nodes: search.nodes, words, over, ..self }
+        let mut searched =
+            Self { best: search.incumbent, nodes: search.nodes, words, over, ..self };
+        searched.found.2 = Some(Shared::new(search.clone()));
+        searched
     }
 
     /// Of a rival that could not be run.

@@ -6,6 +6,8 @@ use record::scenario::{InstanceText, Run, Scenario};
 
 use crate::state::board::Board;
 use crate::state::document::{Document, Slot};
+use crate::state::instances::instance_title;
+use crate::state::lane::Lane;
 use crate::state::pointer::Shared;
 
 /// The version of page and engine, which are one file.
@@ -44,44 +46,66 @@ impl Made {
 pub(crate) struct Found(Vec<FoundInLane>);
 
 /// What a rival is, its relaxation and its search, as far as they are there.
-type FoundInLane =
+pub(crate) type FoundInLane =
     (Option<Shared<RivalReport>>, Option<Shared<RootReport>>, Option<Shared<SearchReport>>);
 
 impl Found {
     /// What the lanes of a document have found.
     pub(crate) fn on(document: &Document, board: &Board) -> Self {
         let lanes = document.slots.iter().map(|slot| board.lane(slot.id));
-        let found = lanes.map(|lane| {
-            let search = lane.search.clone().filter(|_| !lane.phase.is_busy());
-            (lane.rival.clone(), lane.root.clone(), search)
-        });
-        Self(found.collect())
+        Self(lanes.map(|lane| found_in(&lane)).collect())
     }
 
     fn results(&self) -> Vec<RivalResult> {
         self.0.iter().map(result).collect()
     }
 
-    /// The results with their letters, titles and endings, as a record names them.
-    pub(crate) fn on_record(&self, document: &Document) -> Vec<RivalResult> {
-        let slots = document.slots.iter().enumerate();
-        let named = slots.zip(self.results()).map(|((place, slot), result)| {
-            let ended = result.search.as_ref().map(|search| search.status);
-            let ended = ended.or(result.root.as_ref().map(|root| root.status));
-            RivalResult {
-                rival: Document::letter(place),
-                title: document.rival_title(&slot.rival),
-                status: ended.unwrap_or_default(),
-                relaxation: document.is_relaxation(&slot.rival),
-                ..result
-            }
-        });
-        named.collect()
-    }
-
     /// Its digest; `None` where nothing is found yet.
     pub(crate) fn digest(&self) -> Option<String> {
         digest(&self.results())
+    }
+}
+
+/// What a lane has found, its search once that stands still.
+pub(crate) fn found_in(lane: &Lane) -> FoundInLane {
+    let search = lane.search.clone().filter(|_| !lane.phase.is_busy());
+    (lane.rival.clone(), lane.root.clone(), search)
+}
+
+/// What is known of every rival on every instance, as a record and a pack name it; what was not run
+/// on an instance is left out.
+pub(crate) fn results(document: &Document, board: &Board) -> Vec<RivalResult> {
+    let instances = document.instances();
+    let several = instances.len() > 1;
+    let mut all = Vec::new();
+    for (place, text) in instances.iter().enumerate() {
+        let instance = if several { instance_title(text, place) } else { String::new() };
+        for (number, slot) in document.slots.iter().enumerate() {
+            let found = if place == document.chosen {
+                Some(found_in(&board.lane(slot.id)))
+            } else {
+                board.kept_of(&slot.rival, text).map(|outcome| outcome.found)
+            };
+            all.extend(found.map(|found| RivalResult {
+                instance: instance.clone(),
+                ..named(document, (number, slot), &found)
+            }));
+        }
+    }
+    all
+}
+
+/// A result with its letter, title and ending.
+fn named(document: &Document, (place, slot): (usize, &Slot), found: &FoundInLane) -> RivalResult {
+    let result = result(found);
+    let ended = result.search.as_ref().map(|search| search.status);
+    let ended = ended.or(result.root.as_ref().map(|root| root.status));
+    RivalResult {
+        rival: Document::letter(place),
+        title: document.rival_title(&slot.rival),
+        status: ended.unwrap_or_default(),
+        relaxation: document.is_relaxation(&slot.rival),
+        ..result
     }
 }
 

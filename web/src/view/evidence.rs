@@ -11,6 +11,7 @@ use crate::view::differences::Differences;
 use crate::view::figure::{figure, gap, share};
 use crate::view::inspector::InspectorProps as EvidenceProps;
 use crate::view::lane::is_over;
+use crate::view::recorded::AgainstRecords;
 use crate::view::results::Results;
 use crate::view::rivals::HUES;
 use crate::view::studies::Studies;
@@ -44,6 +45,7 @@ pub(crate) fn Evidence(props: &EvidenceProps) -> Html {
                    checked to within an amount where what is proved is a bound that far from the figure. \
                    Node counts with + are of a search that is not finished." }
             </p>
+            <AgainstRecords document={document.clone()} board={board.clone()} />
             <Differences document={document.clone()} board={board.clone()} />
             <Studies document={document.clone()} board={board.clone()} />
             <p class="prose caution">

@@ -37,6 +37,7 @@ pub(crate) mod paint;
 pub(crate) mod paste;
 mod picture;
 pub(crate) mod reason;
+mod recorded;
 mod replay;
 mod results;
 pub(crate) mod rivals;

@@ -1,15 +1,18 @@
-//! Opening a file: a scenario takes the page's place, a log is proved, any other text is read as an
-//! instance.
+//! Opening a file: a scenario takes the page's place, a pack does so and is held against, a log is
+//! proved, any other text is read as an instance.
 
 use gloo_events::{EventListener, EventListenerOptions};
 use gloo_file::callbacks::{FileReader, read_as_bytes};
 use record::file::looks_like_a_scenario;
 use record::log::looks_like_a_log;
+use record::pack::looks_like_a_pack;
 use wasm_bindgen::JsCast;
 use web_sys::{DragEvent, File, HtmlInputElement};
 use yew::prelude::*;
 
+use crate::browser::packs::parse;
 use crate::state::document::DocumentAction;
+use crate::state::recorded::Recorded;
 use crate::state::share::{Refusal, read};
 use crate::view::share::notice::Notice;
 use crate::view::share::proof::LogFile;
@@ -107,6 +110,9 @@ fn open(file: File, (act, say, prove): Takers) -> Option<FileReader> {
 }
 
 fn take(name: &str, text: String, act: &Callback<DocumentAction>, say: &Callback<Notice>) {
+    if looks_like_a_pack(&text) {
+        return take_pack(name, &text, act, say);
+    }
     if !(looks_like_a_scenario(&text) || name.to_lowercase().ends_with(".toml")) {
         act.emit(DocumentAction::Text(text));
         say.emit(Notice::of(format!("{name} was read as an instance.")));
@@ -116,6 +122,21 @@ fn take(name: &str, text: String, act: &Callback<DocumentAction>, say: &Callback
         Ok(scenario) => {
             say.emit(Notice::opened(&scenario, name));
             act.emit(DocumentAction::Open(Box::new(scenario)));
+        }
+        Err(refusal) => say.emit(Notice::refusal(refusal)),
+    }
+}
+
+/// Opens the scenario of a pack, which is then held against what was recorded.
+fn take_pack(name: &str, text: &str, act: &Callback<DocumentAction>, say: &Callback<Notice>) {
+    let opened = parse(text)
+        .map_err(|why| Refusal::new(format!("{name} is no pack: {why}. The page is as it was.")))
+        .and_then(|pack| Ok((read(&pack.scenario, name)?, pack)));
+    match opened {
+        Ok((scenario, pack)) => {
+            say.emit(Notice::opened(&scenario, name));
+            let recorded = Recorded::new(pack, &scenario);
+            act.emit(DocumentAction::OpenPack(Box::new(scenario), Box::new(recorded)));
         }
         Err(refusal) => say.emit(Notice::refusal(refusal)),
     }

@@ -77,11 +77,9 @@
     return worker;
   }
 
-  function fail(error) {
+  function fail(words, error) {
     notice.setAttribute("role", "alert");
-    notice.textContent =
-      "Hullward needs WebAssembly and could not start. A current browser with WebAssembly " +
-      `allowed opens it. What the browser said: ${error}`;
+    notice.textContent = `${words} What the browser said: ${error}`;
     document.body.append(notice);
     document.documentElement.dataset.boot = "failed";
   }
@@ -95,11 +93,22 @@
     performance.mark("page open");
     document.documentElement.dataset.boot = "done";
     notice.textContent = "The engine is still arriving; what you enter waits for it.";
-    await module("engine");
+    try {
+      await module("engine");
+    } catch (error) {
+      fail("The engine did not arrive whole, or the browser refuses it: load the page again.", error);
+      return;
+    }
     notice.remove();
     performance.mark("engine there");
     document.documentElement.dataset.engine = "done";
   }
 
-  open().catch(fail);
+  open().catch((error) =>
+    fail(
+      "Hullward needs WebAssembly and could not start. A current browser with WebAssembly allowed " +
+        "opens it.",
+      error,
+    ),
+  );
 })();

@@ -2,9 +2,10 @@
 
 use std::io::{Result, Write};
 
+use engine::native::instance_title;
 use record::file;
-use record::pack::{Expected, Pack};
-use record::scenario::{InstanceText, Scenario};
+use record::pack::{Expected, Pack, VERSION};
+use record::scenario::{InstanceText, Scenario, letter};
 use report::drift::{beyond, differences};
 
 use crate::complain::complain;
@@ -17,6 +18,7 @@ use crate::source;
 struct Opened {
     scenario: Scenario,
     expected: Vec<Expected>,
+    tolerance: f64,
 }
 
 /// Runs a pack again, or holds a new instance against it.
@@ -51,24 +53,31 @@ fn read(name: &str, err: &mut dyn Write) -> Result<std::result::Result<Opened, S
             )));
         }
     };
+    if pack.hullward_pack != VERSION {
+        let version = pack.hullward_pack;
+        return Ok(Err(format!("this is a pack of version {version}; {VERSION} can be read")));
+    }
     let parsed = file::parse(&pack.scenario);
     complain(err, name, None, &parsed.complaints)?;
     Ok(parsed
         .scenario
-        .map(|scenario| Opened { scenario, expected: pack.expected })
+        .map(|scenario| Opened { scenario, expected: pack.expected, tolerance: pack.tolerance })
         .ok_or_else(|| "its scenario cannot be read".to_owned()))
 }
 
 /// Runs everything again and says what differs.
 fn again(pack: &Opened, out: &mut dyn Write) -> Result<Ending> {
     let mut differ = 0;
-    let rivals = pack.scenario.rivals.len().max(1);
-    for (place, before) in pack.expected.iter().enumerate() {
-        let (_, one) = run_one(&pack.scenario, (place / rivals, place % rivals));
-        let now = Expected::of(&one);
-        for words in differences(before, &now) {
+    for before in &pack.expected {
+        let Some(place) = place_of(&pack.scenario, before) else {
             differ += 1;
-            writeln!(out, "{}: {words}", who(&now))?;
+            writeln!(out, "{}: its scenario has none of that name", who(before))?;
+            continue;
+        };
+        let (_, one) = run_one(&pack.scenario, place);
+        for words in differences(before, &Expected::of(&one), pack.tolerance) {
+            differ += 1;
+            writeln!(out, "{}: {words}", who(before))?;
         }
     }
     if differ == 0 {
@@ -76,6 +85,14 @@ fn again(pack: &Opened, out: &mut dyn Write) -> Result<Ending> {
         return Ok(Ending::Done);
     }
     Ok(Ending::Broken)
+}
+
+/// The instance and the rival of a record, by place.
+fn place_of(scenario: &Scenario, of: &Expected) -> Option<(usize, usize)> {
+    let instances = scenario.instances().count().max(1);
+    let instance = (0..instances).find(|&at| instance_title(scenario, at) == of.instance)?;
+    let rival = (0..scenario.rivals.len()).find(|&at| letter(at) == of.rival)?;
+    Some((instance, rival))
 }
 
 fn who(of: &Expected) -> String {
@@ -99,7 +116,7 @@ fn held(pack: Opened, text: String, out: &mut dyn Write) -> Result<Ending> {
         }
         let now = Expected::of(&one);
         let before = pack.expected.iter().filter(|before| before.rival == now.rival);
-        let outside = beyond(&before.collect::<Vec<_>>(), &now);
+        let outside = beyond(&before.collect::<Vec<_>>(), &now, pack.tolerance);
         if outside.is_empty() {
             writeln!(out, "{}: within what was recorded", one.rival)?;
         }

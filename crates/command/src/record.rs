@@ -15,7 +15,6 @@ use report::decision::{self, Evidence};
 
 use crate::ending::Ending;
 use crate::options::Form;
-
 use crate::run::{run_one, run_study};
 
 /// The record of a scenario in one of its forms, and how the runs ended; rivals that could not be run

@@ -37,6 +37,9 @@ pub struct Expected {
     pub rival: String,
     /// Its title.
     pub title: String,
+    /// How its search ended, or its relaxation where nothing was searched; none in packs that do not
+    /// say it.
+    pub status: Option<Status>,
     /// Rows as written.
     pub rows: u32,
     /// Columns.
@@ -67,6 +70,7 @@ impl Expected {
             instance: one.instance.clone(),
             rival: one.rival.clone(),
             title: one.title.clone(),
+            status: Some(one.status),
             rows: one.rows,
             columns: one.columns,
             nonzeros: one.nonzeros,
@@ -84,7 +88,7 @@ impl Pack {
     #[must_use]
     pub fn new(engine: &str, scenario: &Scenario, results: &[RivalResult]) -> Self {
         Self {
-            hullward_pack: 1,
+            hullward_pack: VERSION,
             engine: engine.to_owned(),
             tolerance: TOLERANCE,
             digest: digest(results),
@@ -93,6 +97,9 @@ impl Pack {
         }
     }
 }
+
+/// The version of packs that is written and read.
+pub const VERSION: u32 = 1;
 
 /// Whether a text is meant as a pack, by its begin.
 #[must_use]

@@ -36,6 +36,20 @@ pub enum Status {
     Error,
 }
 
+impl Status {
+    /// As JSON and tables have it.
+    #[must_use]
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::Optimal => "optimal",
+            Self::Infeasible => "infeasible",
+            Self::Unbounded => "unbounded",
+            Self::Limit => "limit",
+            Self::Error => "error",
+        }
+    }
+}
+
 /// What one rival gave.
 #[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
 pub struct RivalResult {

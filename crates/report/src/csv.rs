@@ -1,6 +1,6 @@
 //! Results as comma-separated values (RFC 4180), full digits, one line a rival and instance.
 
-use record::results::{RivalResult, Status};
+use record::results::RivalResult;
 
 const HEAD: [&str; 16] = [
     "scenario",
@@ -39,14 +39,7 @@ fn row(result: &RivalResult) -> [String; 16] {
         result.instance.clone(),
         result.rival.clone(),
         result.title.clone(),
-        match result.status {
-            Status::Optimal => "optimal",
-            Status::Infeasible => "infeasible",
-            Status::Unbounded => "unbounded",
-            Status::Limit => "limit",
-            Status::Error => "error",
-        }
-        .to_owned(),
+        result.status.word().to_owned(),
         result.rows.to_string(),
         result.columns.to_string(),
         result.integer_columns.to_string(),

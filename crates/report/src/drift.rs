@@ -1,6 +1,7 @@
 //! Results held against those of a regression pack, in sentences.
 
-use record::pack::{Expected, TOLERANCE};
+use record::pack::Expected;
+use record::results::Status;
 
 use crate::number::full;
 
@@ -19,61 +20,77 @@ fn measures(one: &Expected) -> [(&'static str, Option<f64>); 7] {
     ]
 }
 
-fn slack(value: f64) -> f64 {
-    TOLERANCE * (1.0 + value.abs())
+/// How far two values may be away from each other and still count as the same.
+fn slack(value: f64, tolerance: f64) -> f64 {
+    tolerance * (1.0 + value.abs())
+}
+
+/// How the search ended, where that is known and is no limit; a relaxation that was solved and not
+/// searched says nothing of the problem.
+fn ending(one: &Expected) -> Option<Status> {
+    let open = one.status == Some(Status::Limit)
+        || one.status == Some(Status::Optimal) && one.optimum.is_none();
+    one.status.filter(|_| !open)
 }
 
 /// What differs between a result and what was recorded of the same rival on the same instance, a
-/// clause each.
+/// clause each. What was not known then is not compared.
 #[must_use]
-pub fn differences(before: &Expected, now: &Expected) -> Vec<String> {
+pub fn differences(before: &Expected, now: &Expected, tolerance: f64) -> Vec<String> {
+    let mut clauses = other_ending(&[before], now);
     let pairs = measures(before).into_iter().zip(measures(now));
-    let differing = pairs.filter(|((_, before), (_, now))| match (before, now) {
-        (Some(before), Some(now)) => (before - now).abs() > slack(*before),
-        _ => before.is_some() != now.is_some(),
+    let differing = pairs.filter_map(|((words, before), (_, now))| {
+        let before = before?;
+        let same = now.is_some_and(|now| (before - now).abs() <= slack(before, tolerance));
+        let told = now.map_or_else(|| "none".to_owned(), full);
+        (!same).then(|| format!("{words} {told} in place of {}", full(before)))
     });
-    let told = |value: Option<f64>| value.map_or_else(|| "none".to_owned(), full);
-    differing
-        .map(|((words, before), (_, now))| {
-            format!("{words} {} in place of {}", told(now), told(before))
-        })
-        .collect()
+    clauses.extend(differing);
+    clauses
+}
+
+/// That a search ended in another way than all before.
+fn other_ending(before: &[&Expected], now: &Expected) -> Vec<String> {
+    let known: Vec<Status> = before.iter().filter_map(|before| ending(before)).collect();
+    let other = ending(now).filter(|now| !known.is_empty() && !known.contains(now));
+    let clause = |now: Status| format!("{}, where {} was recorded", now.word(), known[0].word());
+    other.map(clause).into_iter().collect()
 }
 
 /// The measures of a result that lie outside of all that was recorded of its rival, a clause each.
 /// What is not known yet, or was never known, is not told.
 #[must_use]
-pub fn beyond(before: &[&Expected], now: &Expected) -> Vec<String> {
-    let mut clauses = Vec::new();
+pub fn beyond(before: &[&Expected], now: &Expected, tolerance: f64) -> Vec<String> {
+    let slack = |value| slack(value, tolerance);
+    let mut clauses = other_ending(before, now);
     for (place, (words, now)) in measures(now).into_iter().enumerate() {
         let known = before.iter().filter_map(|before| measures(before)[place].1);
-        let range = known.fold(None, |range: Option<(f64, f64)>, value| match range {
-            None => Some((value, value)),
-            Some((low, high)) => Some((
-                if value < low { value } else { low },
-                if value > high { value } else { high },
-            )),
-        });
-        let (Some(now), Some((low, high))) = (now, range) else { continue };
+        let (Some(now), Some((low, high))) = (now, range(known)) else { continue };
         if now >= low - slack(low) && now <= high + slack(high) {
             continue;
         }
         clauses.push(if high - low <= slack(high) {
             format!("{words} {}, where {} was recorded", full(now), full(low))
         } else {
-            format!(
-                "{words} {}, outside of the recorded {} to {}",
-                full(now),
-                full(low),
-                full(high)
-            )
+            let (low, high) = (full(low), full(high));
+            format!("{words} {}, outside of the recorded {low} to {high}", full(now))
         });
     }
     clauses
 }
 
+/// The least and the largest.
+fn range(values: impl Iterator<Item = f64>) -> Option<(f64, f64)> {
+    values.fold(None, |range, value| {
+        let (low, high) = range.unwrap_or((value, value));
+        Some((if value < low { value } else { low }, if value > high { value } else { high }))
+    })
+}
+
 #[cfg(test)]
 mod tests {
+    use record::pack::TOLERANCE;
+
     use super::*;
 
     fn one(rows: u32, root_bound: Option<f64>) -> Expected {
@@ -83,8 +100,8 @@ mod tests {
     #[test]
     fn what_is_the_same_to_six_digits_is_no_difference() {
         let before = one(3, Some(1e6));
-        assert!(differences(&before, &one(3, Some(1e6 + 0.5))).is_empty());
-        let told = differences(&before, &one(4, None));
+        assert!(differences(&before, &one(3, Some(1e6 + 0.5)), TOLERANCE).is_empty());
+        let told = differences(&before, &one(4, None), TOLERANCE);
         assert_eq!(told, ["rows 4 in place of 3", "root bound none in place of 1,000,000"]);
     }
 
@@ -92,9 +109,9 @@ mod tests {
     fn an_instance_is_held_against_the_least_and_the_most() {
         let (small, large) = (one(3, Some(10.0)), one(8, Some(30.0)));
         let recorded = [&small, &large];
-        assert!(beyond(&recorded, &one(5, Some(30.0))).is_empty());
-        assert!(beyond(&recorded, &one(5, None)).is_empty());
-        let told = beyond(&recorded, &one(9, Some(2.5)));
+        assert!(beyond(&recorded, &one(5, Some(30.0)), TOLERANCE).is_empty());
+        assert!(beyond(&recorded, &one(5, None), TOLERANCE).is_empty());
+        let told = beyond(&recorded, &one(9, Some(2.5)), TOLERANCE);
         assert_eq!(
             told,
             [
@@ -102,7 +119,25 @@ mod tests {
                 "root bound 2.5, outside of the recorded 10 to 30"
             ]
         );
-        assert_eq!(beyond(&[&small], &one(9, None)), ["rows 9, where 3 was recorded"]);
-        assert!(beyond(&[], &one(9, None)).is_empty());
+        assert_eq!(beyond(&[&small], &one(9, None), TOLERANCE), ["rows 9, where 3 was recorded"]);
+        assert!(beyond(&[], &one(9, None), TOLERANCE).is_empty());
+    }
+
+    #[test]
+    fn an_ending_is_told_and_a_limit_is_none() {
+        let ended =
+            |status, optimum| Expected { status: Some(status), optimum, ..Expected::default() };
+        let solved = ended(Status::Optimal, Some(4.0));
+        let none = ended(Status::Infeasible, None);
+        assert_eq!(
+            beyond(&[&solved], &none, TOLERANCE),
+            ["infeasible, where optimal was recorded"]
+        );
+        assert!(beyond(&[&solved, &none], &none, TOLERANCE).is_empty());
+        // Neither a search that a limit stopped nor a relaxation alone says how it would have ended.
+        for open in [ended(Status::Limit, None), ended(Status::Optimal, None)] {
+            assert!(differences(&open, &solved, TOLERANCE).is_empty());
+            assert!(differences(&open, &none, TOLERANCE).is_empty());
+        }
     }
 }

@@ -116,6 +116,21 @@ pub struct Settings {
     pub seed: u64,
 }
 
+impl Settings {
+    /// Everything there is: as a production solver would. No limits.
+    #[must_use]
+    pub fn production() -> Self {
+        Self {
+            branching: Branching::Reliability,
+            selection: Selection::BestEstimate,
+            node_work: NodeWork { propagation: true, fixing: true, lattice: true },
+            cuts: Cuts { classes: Classes::all(), every: 4, rounds: 1 },
+            heuristics: Heuristics { rounding: true, trip: true, diving: true, pump: true },
+            ..Self::default()
+        }
+    }
+}
+
 impl Default for Settings {
     fn default() -> Self {
         Self {

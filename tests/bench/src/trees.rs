@@ -172,18 +172,6 @@ fn bare_settings() -> Settings {
     Settings { heuristics, node_limit: Some(MOST_NODES), ..Settings::default() }
 }
 
-/// Everything on.
-fn production() -> Settings {
-    Settings {
-        branching: Branching::Reliability,
-        selection: Selection::BestEstimate,
-        node_work: NodeWork { propagation: true, fixing: true, lattice: true },
-        cuts: Cuts { classes: Classes::all(), every: 4, rounds: 1 },
-        node_limit: Some(MOST_FULL.0),
-        ..Settings::default()
-    }
-}
-
 /// The problem as a model whose leading columns are whole.
 fn whole_model(problem: &Named) -> Rc<Model> {
     let lp = &problem.lp;

@@ -9,6 +9,9 @@ mod opening;
 #[path = "page/arriving.rs"]
 mod arriving;
 
+#[path = "page/packs.rs"]
+mod packs;
+
 #[path = "page/pasting.rs"]
 mod pasting;
 

@@ -22,6 +22,12 @@ pub mod theory;
 use std::io::Read;
 use std::path::PathBuf;
 
+/// Whether the long checks are asked for as well, by `HULLWARD_WHOLE`.
+#[must_use]
+pub fn whole() -> bool {
+    std::env::var_os("HULLWARD_WHOLE").is_some()
+}
+
 /// A file of the open data, as text. `None` when it is not there: the check then says where
 /// the file is published and passes over it.
 ///

@@ -12,14 +12,11 @@
 
 use std::rc::Rc;
 
-use hullward_tests_reference::open_data;
 use hullward_tests_reference::round_trip::{formulation, rival};
+use hullward_tests_reference::{open_data, whole};
 use instance::Instance;
 use model::{Model, mps};
-use tree::{
-    Branching, Classes, Cuts, Heuristics, NodeWork, Progress, Search, Selection, Settings, Status,
-    Summary,
-};
+use tree::{Progress, Search, Settings, Status, Summary};
 
 const MIPLIB: &str = "MIPLIB 3";
 const OR_LIBRARY: &str = "the OR-Library, J. E. Beasley, Brunel University";
@@ -27,25 +24,9 @@ const OR_LIBRARY: &str = "the OR-Library, J. E. Beasley, Brunel University";
 /// What is done in one slice, in non-zeros touched.
 const SLICE: u64 = 1_000_000;
 
-fn whole() -> bool {
-    std::env::var_os("HULLWARD_WHOLE").is_some()
-}
-
-/// Everything there is, as the production preset has it.
-fn production() -> Settings {
-    Settings {
-        branching: Branching::Reliability,
-        selection: Selection::BestEstimate,
-        node_work: NodeWork { propagation: true, fixing: true, lattice: true },
-        cuts: Cuts { classes: Classes::all(), every: 4, rounds: 1 },
-        heuristics: Heuristics { rounding: true, trip: true, diving: true, pump: true },
-        ..Settings::default()
-    }
-}
-
 /// A search to its end, or until so many non-zeros are touched.
 fn searched(model: &Rc<Model>, most: u64) -> Summary {
-    let mut search = Search::new(Rc::clone(model), production());
+    let mut search = Search::new(Rc::clone(model), Settings::production());
     while search.work().ticks < most {
         match search.advance(SLICE) {
             Progress::Finished => break,

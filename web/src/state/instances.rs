@@ -88,6 +88,11 @@ pub(crate) fn instance_title(text: &InstanceText, place: usize) -> String {
     if text.title.is_empty() { format!("Instance {}", place + 1) } else { text.title.clone() }
 }
 
+/// The same as records and the command name it.
+pub(crate) fn name_on_record(text: &InstanceText, place: usize) -> String {
+    if text.title.is_empty() { format!("instance {}", place + 1) } else { text.title.clone() }
+}
+
 #[cfg(test)]
 mod tests {
     use std::rc::Rc;

@@ -7,7 +7,7 @@ use report::drift::beyond;
 
 use crate::state::board::Board;
 use crate::state::document::Document;
-use crate::state::instances::instance_title;
+use crate::state::instances::name_on_record;
 use crate::state::same::results;
 
 /// A pack that was opened.
@@ -15,6 +15,8 @@ use crate::state::same::results;
 pub(crate) struct Recorded {
     /// What was recorded.
     pub(crate) expected: Vec<Expected>,
+    /// How far a value may be away, relative to its size.
+    tolerance: f64,
     /// The engine that it was recorded with.
     pub(crate) engine: String,
     /// Each recorded instance: its name in the records and its text.
@@ -38,11 +40,12 @@ impl Recorded {
         let all: Vec<_> = scenario.instances().collect();
         let name = |place| match all.len() {
             1 => String::new(),
-            _ => instance_title(all[place], place),
+            _ => name_on_record(all[place], place),
         };
         let instances =
             all.iter().enumerate().map(|(place, text)| (name(place), text.text.clone())).collect();
-        Self { expected: pack.expected, engine: pack.engine, instances }
+        let Pack { expected, tolerance, engine, .. } = pack;
+        Self { expected, tolerance, engine, instances }
     }
 
     /// Every result of the page against what was recorded of its rival: of the same instance where
@@ -56,7 +59,7 @@ impl Recorded {
             found.map(|place| self.instances[place].0.as_str())
         };
         let named = texts.iter().enumerate().map(|(place, text)| {
-            let name = if several { instance_title(text, place) } else { String::new() };
+            let name = if several { name_on_record(text, place) } else { String::new() };
             (name, of(&text.text))
         });
         let named: Vec<(String, Option<&str>)> = named.collect();
@@ -91,7 +94,8 @@ impl Recorded {
             _ => "within what was recorded",
         };
         // Sizes without a root are those of a rival that is not there yet.
-        let beyond = if one.root.is_some() { beyond(&before, &now) } else { Vec::new() };
+        let beyond =
+            if one.root.is_some() { beyond(&before, &now, self.tolerance) } else { Vec::new() };
         Held { who, beyond, words: words.to_owned() }
     }
 }

@@ -6,7 +6,7 @@ use record::scenario::{InstanceText, Run, Scenario};
 
 use crate::state::board::Board;
 use crate::state::document::{Document, Slot};
-use crate::state::instances::instance_title;
+use crate::state::instances::name_on_record;
 use crate::state::lane::Lane;
 use crate::state::pointer::Shared;
 
@@ -79,7 +79,7 @@ pub(crate) fn results(document: &Document, board: &Board) -> Vec<RivalResult> {
     let several = instances.len() > 1;
     let mut all = Vec::new();
     for (place, text) in instances.iter().enumerate() {
-        let instance = if several { instance_title(text, place) } else { String::new() };
+        let instance = if several { name_on_record(text, place) } else { String::new() };
         for (number, slot) in document.slots.iter().enumerate() {
             let found = if place == document.chosen {
                 Some(found_in(&board.lane(slot.id)))

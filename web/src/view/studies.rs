@@ -73,7 +73,8 @@ fn decision_record(props: &StudiesProps, shelf: &Shelf) -> Html {
     let pack = {
         let (document, board) = (props.document.clone(), props.board.clone());
         Callback::from(move |_: MouseEvent| {
-            let results = results_of(&document, &board);
+            let mut results = results_of(&document, &board);
+            results.retain(|one| one.root.is_some());
             let pack = Pack::new(env!("CARGO_PKG_VERSION"), &document.scenario(), &results);
             download(&file_of(&document.title, "pack.json"), report::pack::json(&pack).as_str());
         })
@@ -91,7 +92,7 @@ fn decision_record(props: &StudiesProps, shelf: &Shelf) -> Html {
             <p class="soft">
                 { "The question, the instance, what was found and answered above, what would reopen the decision, \
                    the formulations, and how to see the same. The pack is for regression tests: the scenario with what \
-                   each rival gave, to be opened here or run by hullward drift." }
+                   each rival gave so far, to be opened here or run by hullward drift." }
             </p>
         </div>
     }

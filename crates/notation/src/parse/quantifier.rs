@@ -158,8 +158,7 @@ impl Parser<'_> {
         let words = rest.iter().take_while(|t| t.kind == T::Word).count();
         let nouns = rest[..words].iter().take_while(|t| noun(t)).count();
         let next = |i: usize| rest.get(i).map_or(T::End, |t| t.kind);
-        let pair =
-            nouns == words && next(words) == T::LeftParen && { rest[words].gap.has(Gap::SPACE) };
+        let pair = nouns == words && next(words) == T::LeftParen && rest[words].gap.has(Gap::SPACE);
         let single = nouns + 1 == words && matches!(next(words), T::In | T::Comma | T::Equal);
         if nouns > 0
             && (pair || single)

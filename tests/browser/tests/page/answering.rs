@@ -1,9 +1,9 @@
 //! The page stays quick while long work runs.
 
 use hullward_tests_browser::Outcome;
-use hullward_tests_browser::browser::SOON;
+use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::visit::{Source, visit, visit_chromium};
-use serde_json::json;
+use serde_json::{Value, json};
 
 use crate::lanes::{add, button, part, paste, paste_long_work, scattered, status};
 
@@ -67,14 +67,27 @@ async fn stop_acts_as_soon_during_one_long_lp() -> Outcome<()> {
     .await
 }
 
+/// What was seen in each of some spells, until one without a long task.
+async fn spells(browser: &Browser) -> Outcome<Vec<Value>> {
+    let mut seen = Vec::new();
+    while seen.len() < 3 && seen.last().is_none_or(|tasks| *tasks != json!([])) {
+        browser.script("longTasks.length = 0").await?;
+        tokio::time::sleep(std::time::Duration::from_secs(3)).await;
+        seen.push(browser.script("return longTasks").await?);
+    }
+    Ok(seen)
+}
+
+// A machine that does other work as well may hold up a task now and then; what is the page's own
+// fault shows in each of three spells.
 #[tokio::test(flavor = "multi_thread")]
 async fn no_task_of_the_page_is_long_while_a_tree_grows() -> Outcome<()> {
     visit_chromium(Source::File, async |browser| {
         paste_long_work(browser).await?;
         browser.script(WATCH_TASKS).await?;
         button(browser, "A", "run").await?.click().await?;
-        tokio::time::sleep(std::time::Duration::from_secs(3)).await;
-        assert_eq!(browser.script("return longTasks").await?, json!([]), "milliseconds");
+        let seen = spells(browser).await?;
+        assert_eq!(seen.last(), Some(&json!([])), "milliseconds: {seen:?}");
         // A long task would have been seen.
         browser.script(LONG_TASK).await?;
         let seen = async || Ok(browser.script("return longTasks.length").await? == 1);

@@ -10,7 +10,7 @@ use record::log::decode;
 use serde_json::json;
 
 use crate::lanes::{button, part, paste, scattered, status, text};
-use crate::share::says;
+use crate::share::{CATCH, says};
 
 fn scenario(run: &str) -> String {
     format!(
@@ -28,10 +28,7 @@ async fn opened(browser: &Browser, run: &str) -> Outcome<()> {
 
 /// What the page saves in place of what it would download, as bytes.
 async fn saved(browser: &Browser) -> Outcome<(String, Vec<u8>)> {
-    let catch = "const make = URL.createObjectURL; globalThis.blob = null; \
-        URL.createObjectURL = (blob) => { globalThis.blob = blob; return make.call(URL, blob); }; \
-        HTMLAnchorElement.prototype.click = function () { globalThis.file = this.download; };";
-    browser.script(catch).await?;
+    browser.script(CATCH).await?;
     button(browser, "A", "save-log").await?.click().await?;
     let there =
         async || Ok(browser.script("return globalThis.blob !== null").await? == json!(true));

@@ -8,14 +8,10 @@ use hullward_tests_browser::visit::{Source, visit_chromium};
 use tokio::process::Command;
 
 use crate::lanes::{button, status, text};
+use crate::share::{CATCH, CAUGHT};
 
 /// The scenario that the page opens with.
 const DEMO: &str = "scenarios/mobile-library-round.toml";
-
-/// Keeps what the page saves, for headless Chromium has nobody to ask where to.
-const CATCH: &str = "const make = URL.createObjectURL; \
-    URL.createObjectURL = (blob) => { globalThis.blob = blob; return make.call(URL, blob); }; \
-    HTMLAnchorElement.prototype.click = function () { globalThis.file = this.download; };";
 
 /// What a button of a lane's menu saves: the file's name and its text.
 async fn taken(browser: &Browser, letter: &str, form: &str) -> Outcome<(String, String)> {
@@ -24,8 +20,7 @@ async fn taken(browser: &Browser, letter: &str, form: &str) -> Outcome<(String, 
     let saved = async || Ok(browser.script("return globalThis.file").await? != "");
     browser.until(&format!("{form} of {letter} is saved"), SOON, saved).await?;
     let name = browser.script("return globalThis.file").await?;
-    let read = "globalThis.blob.text().then(arguments[arguments.length - 1])";
-    let saved = browser.script_async(read, Vec::new()).await?;
+    let saved = browser.script_async(CAUGHT, Vec::new()).await?;
     let both = [name, saved].map(|it| it.as_str().unwrap_or_default().to_owned());
     let [name, saved] = both;
     Ok((name, saved))

@@ -10,7 +10,15 @@ use serde_json::json;
 
 use crate::lanes::{paste, status, value};
 
-const SCENARIO: &str = include_str!("../../fixtures/nine-points.toml");
+pub(crate) const SCENARIO: &str = include_str!("../../fixtures/nine-points.toml");
+
+/// Keeps what the page saves, for headless Chromium has nobody to ask where to.
+pub(crate) const CATCH: &str = "const make = URL.createObjectURL; globalThis.blob = null; \
+    URL.createObjectURL = (blob) => { globalThis.blob = blob; return make.call(URL, blob); }; \
+    HTMLAnchorElement.prototype.click = function () { globalThis.file = this.download; };";
+
+/// The text of what was kept.
+pub(crate) const CAUGHT: &str = "globalThis.blob.text().then(arguments[arguments.length - 1])";
 
 pub(crate) async fn press(browser: &Browser, name: &str) -> Outcome<()> {
     Ok(browser.still(&format!("[data-testid={name}]")).await?.click().await?)
@@ -241,15 +249,11 @@ async fn a_file_is_saved_and_opened() -> Outcome<()> {
         paste(browser, SCENARIO).await?;
         browser.shows("9 stops, 72 drives").await?;
         let there = bounds(browser).await?;
-        let catch = "const make = URL.createObjectURL; \
-            URL.createObjectURL = (blob) => { globalThis.blob = blob; return make.call(URL, blob); }; \
-            HTMLAnchorElement.prototype.click = function () { globalThis.file = this.download; };";
-        browser.script(catch).await?;
+        browser.script(CATCH).await?;
         press(browser, "save-file").await?;
         let name = browser.script("return globalThis.file").await?;
         assert!(name.as_str().unwrap_or_default().ends_with(".hullward.toml"), "{name}");
-        let read = "globalThis.blob.text().then(arguments[arguments.length - 1])";
-        let text = browser.script_async(read, Vec::new()).await?;
+        let text = browser.script_async(CAUGHT, Vec::new()).await?;
         let text = text.as_str().unwrap_or_default();
         assert_eq!(without_results(text), parse(SCENARIO).scenario);
         std::fs::write(&file, text)?;

@@ -19,7 +19,7 @@ use std::collections::BTreeMap;
 
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::round_trip::{formulation, values};
-use hullward_tests_reference::{agree, open_data};
+use hullward_tests_reference::{agree, open_data, whole};
 use instance::Instance;
 use serde_json::Value;
 
@@ -117,10 +117,6 @@ const LEFT: [(&str, &str, &str); 22] = [
 /// Numbers by `letter0`, `letter1`, ….
 fn row(letter: &str, cells: &[f64]) -> String {
     cells.iter().enumerate().map(|(k, value)| format!("{letter}{k} {value}\n")).collect()
-}
-
-fn whole() -> bool {
-    std::env::var_os("HULLWARD_WHOLE").is_some()
 }
 
 /// The optimum, or the relaxation's value, of a text.

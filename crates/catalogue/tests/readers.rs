@@ -10,7 +10,7 @@
 )]
 
 use std::collections::BTreeMap;
-use std::path::PathBuf;
+use std::path::{Path, PathBuf};
 
 use hullward_catalogue::entries;
 use notation::{Diagnostic, assumed, bind, check, parse};
@@ -21,7 +21,7 @@ const FILES: &[(&str, &[&str])] = &[
     ("gap/gap1.txt", &["gap"]),
     ("cap/cap41.txt", &["cfl", "ufl"]),
     ("pmedian/pmed1.txt", &["p-median", "p-centre"]),
-    ("wt/wt40.txt", &["machine"]),
+    ("wt/wt40.txt", &["machine", "tardiness"]),
     ("colour/myciel3.col", &["colouring", "stable-set"]),
     ("steiner/b01.stp", &["steiner"]),
     ("tsplib/gr17.tsp", &["tsp"]),
@@ -33,16 +33,30 @@ const FILES: &[(&str, &[&str])] = &[
 /// file does.
 const LISTED: [&str; 3] = ["gap/patterns", "colouring/stable-sets", "cvrp/routes"];
 
-/// Formats of which the folder holds no small file: invented numbers.
+/// Formats of which the folder holds no small file, and some that need none: invented numbers.
 const TEXTS: &[(&str, &str)] = &[
     ("knapsack", "3 6\n5 4\n4 3\n3 2\n"),
+    ("job-shop", "2 2\n0 3 1 2\n1 4 0 5\n"),
+    ("path", "from to c\ns a 4\na t 3\ns t 9\n"),
     ("qap", "3\n\n0 3 0\n3 0 1\n0 1 0\n\n0 1 4\n1 0 2\n4 2 0\n"),
 ];
 
+/// The readers that a family's file names.
+fn readers(family: &str) -> Vec<String> {
+    let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join("formulations");
+    let file = std::fs::read_to_string(folder.join(family).join("family.toml")).unwrap();
+    let table: toml::Table = file.parse().unwrap();
+    let names = table["readers"].as_array().unwrap().iter();
+    names.map(|name| name.as_str().unwrap().to_owned()).collect()
+}
+
 fn without_a_hand(text: &str, family: &str) -> String {
     let reading = instance::read(text, None);
-    let Some(instance) = reading.instance else { return format!("{:?}", reading.complaints) };
     let mut wrong = String::new();
+    if !readers(family).iter().any(|name| name == reading.reader.name()) {
+        wrong += &format!("{family} does not name the reader {}\n", reading.reader.name());
+    }
+    let Some(instance) = reading.instance else { return format!("{:?}", reading.complaints) };
     let rivals = entries().into_iter().filter(|entry| entry.family == family);
     for rival in rivals.filter(|rival| !LISTED.contains(&rival.id.as_str())) {
         let (checked, _) = check(&parse(rival.text).tree);

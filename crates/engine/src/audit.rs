@@ -64,6 +64,12 @@ impl LogAudit {
     /// The scenario does not become a model that has what the log names.
     pub fn advance(&mut self, ticks: u64) -> Result<bool, ErrorReport> {
         match std::mem::replace(&mut self.stage, Stage::Failed) {
+            Stage::Begin(job)
+                if job.instance.as_ref().is_some_and(|t| self.readings.advance(t, ticks)) =>
+            {
+                self.stage = Stage::Begin(job);
+                Ok(false)
+            }
             Stage::Begin(job) => {
                 self.stage = Stage::Loading(Box::new(Loading::begin(&mut self.readings, &job)?));
                 Ok(false)

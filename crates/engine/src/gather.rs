@@ -37,6 +37,10 @@ impl Gathering {
         if self.next >= self.scenario.rivals.len() {
             return false;
         }
+        let text = self.scenario.instances().nth(self.instance);
+        if text.is_some_and(|text| self.readings.advance(text, ticks)) {
+            return true;
+        }
         match self.loading.take() {
             None => {
                 let job = job(&self.scenario, (self.instance, self.next));

@@ -124,10 +124,7 @@ impl Lane {
     pub(crate) fn advance(&mut self, ticks: u64, readings: &mut Readings, outbox: &mut Outbox) {
         let stage = std::mem::replace(&mut self.stage, Stage::Over(None));
         self.stage = match stage {
-            Stage::Begin => match self.job.instance.as_ref().map(|text| readings.read(text)) {
-                None | Some(Ok(_)) => Stage::Read,
-                Some(Err(error)) => self.fail(error, outbox),
-            },
+            Stage::Begin => self.read(ticks, readings, outbox),
             Stage::Read => match Loading::begin(readings, &self.job) {
                 Ok(loading) => Stage::Expanding(Box::new(loading)),
                 Err(error) => self.fail(error, outbox),
@@ -165,6 +162,20 @@ impl Lane {
             Request::Audit => self.begin_audit(outbox),
             _ => {}
         }
+    }
+
+    /// Reads on in the instance.
+    fn read(&mut self, ticks: u64, readings: &mut Readings, outbox: &mut Outbox) -> Stage {
+        let Some(text) = &self.job.instance else { return Stage::Read };
+        if !readings.advance(text, ticks) {
+            return match readings.read(text) {
+                Ok(_) => Stage::Read,
+                Err(error) => self.fail(error, outbox),
+            };
+        }
+        let doing = "reading the instance".to_owned();
+        outbox.push(self.job.run, Reply::Progress(Progress { doing, ticks: 0, iterations: 0 }));
+        Stage::Begin
     }
 
     fn expand(&mut self, mut loading: Box<Loading>, ticks: u64, outbox: &mut Outbox) -> Stage {

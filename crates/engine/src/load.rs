@@ -300,10 +300,12 @@ fn unreadable(text: &str, reading: &Reading) -> ErrorReport {
     }
 }
 
+/// What stands in the way comes first, what was only assumed behind it.
 fn not_a_model(text: &str, found: &[Diagnostic]) -> ErrorReport {
+    let (errors, others): (Vec<_>, Vec<_>) = found.iter().partition(|one| one.is_error());
     ErrorReport {
         message: "the formulation does not become a model".to_owned(),
-        complaints: found.iter().map(|one| of_diagnostic(text, one)).collect(),
+        complaints: errors.into_iter().chain(others).map(|one| of_diagnostic(text, one)).collect(),
         place: "rival".to_owned(),
     }
 }

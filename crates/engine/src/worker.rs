@@ -54,7 +54,9 @@ impl Worker {
     /// Works for about `ticks` (non-zeros touched), or carries out one request. Whether there
     /// is more to do.
     pub fn advance(&mut self, ticks: u64) -> bool {
-        if let Some(request) = self.requests.pop_front() {
+        if self.reads_on(ticks) {
+            // the next request waits for its text
+        } else if let Some(request) = self.requests.pop_front() {
             self.carry_out(request);
         } else if let Some(lane) = &mut self.lane {
             lane.advance(ticks, &mut self.readings, &mut self.outbox);
@@ -94,11 +96,32 @@ impl Worker {
         written.filter_map(Result::ok).collect()
     }
 
+    /// Reads on in the text that the next request needs; whether that is still to be done. A text
+    /// to be read for itself gives way to one that came later.
+    fn reads_on(&mut self, ticks: u64) -> bool {
+        let newer = self.requests.iter().skip(1).any(|one| matches!(one, Request::Read(_)));
+        match self.requests.front() {
+            Some(Request::Read(text)) => {
+                !newer
+                    && (self.readings.advance(text, ticks)
+                        || self.readings.advance_report(text, ticks))
+            }
+            Some(Request::Check(job)) => {
+                job.instance.as_ref().is_some_and(|text| self.readings.advance(text, ticks))
+            }
+            Some(Request::Bind(job)) => self.readings.advance(&job.instance, ticks),
+            _ => false,
+        }
+    }
+
     fn carry_out(&mut self, request: Request) {
         match request {
             Request::Warm => {
                 warm();
                 self.reply(Reply::Ready { engine: crate::VERSION.to_owned() });
+            }
+            Request::Read(_) if self.requests.iter().any(|r| matches!(r, Request::Read(_))) => {
+                self.reply(Reply::InstanceRead(Box::default()));
             }
             Request::Read(text) => {
                 let reply = match self.readings.report(&text) {

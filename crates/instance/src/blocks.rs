@@ -13,11 +13,12 @@ use std::collections::BTreeMap;
 use std::ops::Range;
 
 use crate::MAX_STOPS;
-use crate::cells::{Cell, Separator, Style, number, split, style};
+use crate::cells::{Separator, number, split, style};
 use crate::complaint::{Complaints, excerpt, grouped, plural};
 use crate::facts;
 use crate::instance::{Datum, Instance, Reader};
 use crate::number::{number_text, parse};
+use crate::pace::Pace;
 use crate::square::Square;
 use crate::text::{Line, lines};
 
@@ -77,7 +78,7 @@ fn heading(line: Line<'_>) -> Option<Heading<'_>> {
 }
 
 /// Reads blocks. O(length · log).
-pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<String>)> {
+pub(crate) async fn read(text: &str, sink: &mut Complaints<'_>) -> Option<(Instance, Vec<String>)> {
     let all: Vec<Line> = lines(text).into_iter().filter(|line| !line.is_remark()).collect();
     let mut instance = Instance::new(Reader::Blocks);
     let mut entries = 0;
@@ -96,7 +97,9 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<S
                 let rows = &all[body];
                 match found {
                     Some(Heading::List(name)) => (name, list(rows, &mut entries)),
-                    Some(Heading::By(name, arity)) => (name, by(rows, arity, &mut entries, sink)),
+                    Some(Heading::By(name, arity)) => {
+                        (name, by(rows, arity, &mut entries, sink).await)
+                    }
                     _ => {
                         no_heading(line, sink);
                         continue;
@@ -124,7 +127,7 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<S
         let mend = "Write a name, rows below it, and a blank line after them.";
         sink.error(0..0, "nothing-to-read", "there is no block", mend);
     }
-    let mut facts = describe_all(&mut instance, true);
+    let mut facts = describe_all(&mut instance, true, &sink.pace()).await;
     facts.push("Read as named blocks; every line was read.".to_owned());
     Some((instance, facts))
 }
@@ -161,16 +164,10 @@ fn equation(value: Line, sink: &mut Complaints) -> Datum {
     Datum::Element(String::new())
 }
 
-/// The style of the rows of a block. A comma that no blank follows may be a decimal one.
-fn rows<'a>(lines: &[Line<'a>], entries: &mut usize) -> (Style, Vec<Vec<Cell<'a>>>) {
+fn list(lines: &[Line], entries: &mut usize) -> Datum {
     let style = style(lines);
     let rows: Vec<_> = lines.iter().map(|line| split(line, style.separator)).collect();
     *entries += rows.iter().map(Vec::len).sum::<usize>();
-    (style, rows)
-}
-
-fn list(lines: &[Line], entries: &mut usize) -> Datum {
-    let (_, rows) = rows(lines, entries);
     let cells: Vec<String> = rows
         .into_iter()
         .flatten()
@@ -184,8 +181,20 @@ fn list(lines: &[Line], entries: &mut usize) -> Datum {
     }
 }
 
-fn by(lines: &[Line], arity: usize, entries: &mut usize, sink: &mut Complaints) -> Datum {
-    let (style, rows) = rows(lines, entries);
+async fn by(
+    lines: &[Line<'_>],
+    arity: usize,
+    entries: &mut usize,
+    sink: &mut Complaints<'_>,
+) -> Datum {
+    let style = style(lines);
+    let mut rows = Vec::with_capacity(lines.len());
+    for line in lines {
+        let cells = split(line, style.separator);
+        sink.spend(cells.len()).await;
+        *entries += cells.len();
+        rows.push(cells);
+    }
     let wide = rows.iter().filter(|row| row.len() == arity + 1).count();
     let narrow = rows.iter().filter(|row| row.len() == arity).count();
     let numbers = wide > narrow;
@@ -194,6 +203,7 @@ fn by(lines: &[Line], arity: usize, entries: &mut usize, sink: &mut Complaints) 
     let mut tuples = Vec::new();
     let mut cells = BTreeMap::new();
     for (line, row) in lines.iter().zip(&rows) {
+        sink.spend(4 * row.len()).await;
         if row.len() != width {
             wrong_width(*line, row.len(), width, sink);
             continue;
@@ -234,20 +244,24 @@ fn given_twice(line: Line, key: &[String], first: &Range<usize>, sink: &mut Comp
 
 /// Says what each datum is (tables only where `tables`); where `V` and `c` make a round trip, adds the habits and what is
 /// said of round trips.
-pub(crate) fn describe_all(instance: &mut Instance, tables: bool) -> Vec<String> {
+pub(crate) async fn describe_all(
+    instance: &mut Instance,
+    tables: bool,
+    pace: &Pace,
+) -> Vec<String> {
     let shown = |(_, datum): &(&str, &Datum)| tables || !matches!(datum, Datum::Table { .. });
     let mut sentences: Vec<String> =
         instance.data().filter(shown).map(|(name, datum)| describe(name, datum)).collect();
     if let Some(square) = square(instance) {
-        let trip = Instance::round_trip(square.labels.clone(), &square.cells);
+        let trip = Instance::round_trip_in_slices(square.labels.clone(), &square.cells, pace).await;
         for name in &trip.assumed {
             if let (None, Some(datum)) = (instance.get(name), trip.get(name)) {
                 instance.assume(name, datum.clone());
             }
         }
         sentences.extend(match instance.ends() {
-            Some((start, end)) => facts::of_path(&square, (start, end)),
-            None => facts::of(&square, ""),
+            Some((start, end)) => facts::of_path(&square, (start, end), pace).await,
+            None => facts::of(&square, "", pace).await,
         });
     }
     sentences

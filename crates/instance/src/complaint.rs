@@ -4,6 +4,7 @@ use std::ops::Range;
 
 use crate::cells::Cell;
 use crate::number::{Habit, Number, habit, number_text};
+use crate::pace::Pace;
 
 /// How bad it is.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -38,6 +39,9 @@ const KEPT: usize = 200;
 /// No more warnings than this are kept, so that they never hide errors; the rest is left out.
 const KEPT_WARNINGS: usize = 50;
 
+/// What it takes to read a cell, in ticks.
+const TICKS_OF_A_CELL: usize = 16;
+
 /// Gathers complaints about one text.
 pub(crate) struct Complaints<'a> {
     text: &'a str,
@@ -52,10 +56,11 @@ pub(crate) struct Complaints<'a> {
     doubtful: Option<(Range<usize>, String)>,
     /// Whether some comma cannot stand between thousands.
     comma_is_sure: bool,
+    pace: Pace,
 }
 
 impl<'a> Complaints<'a> {
-    pub(crate) fn new(text: &'a str) -> Self {
+    pub(crate) fn new(text: &'a str, pace: &Pace) -> Self {
         let line_starts = crate::text::lines(text).iter().map(|line| line.start).collect();
         Self {
             text,
@@ -67,7 +72,18 @@ impl<'a> Complaints<'a> {
             habits: [None, None],
             doubtful: None,
             comma_is_sure: false,
+            pace: pace.clone(),
         }
+    }
+
+    /// The pace of the work that complains.
+    pub(crate) fn pace(&self) -> Pace {
+        self.pace.clone()
+    }
+
+    /// Counts cells that were read, each of them some ticks.
+    pub(crate) async fn spend(&self, cells: usize) {
+        self.pace.spend(cells * TICKS_OF_A_CELL).await;
     }
 
     pub(crate) fn error(
@@ -229,17 +245,17 @@ mod tests {
 
     #[test]
     fn places_count_lines_and_characters() {
-        let sink = Complaints::new("äb\ncd\r\ne");
+        let sink = Complaints::new("äb\ncd\r\ne", &Pace::default());
         assert_eq!(sink.place(0), (1, 1));
         assert_eq!(sink.place(2), (1, 2));
         assert_eq!(sink.place(4), (2, 1));
         assert_eq!(sink.place(8), (3, 1));
-        assert_eq!(Complaints::new("").place(0), (1, 1));
+        assert_eq!(Complaints::new("", &Pace::default()).place(0), (1, 1));
     }
 
     #[test]
     fn only_the_first_are_kept() {
-        let mut sink = Complaints::new("text");
+        let mut sink = Complaints::new("text", &Pace::default());
         for _ in 0..KEPT + 5 {
             sink.error(0..1, "x", "m", "");
         }
@@ -252,7 +268,7 @@ mod tests {
 
     #[test]
     fn warnings_hide_no_errors() {
-        let mut sink = Complaints::new("text");
+        let mut sink = Complaints::new("text", &Pace::default());
         for _ in 0..2 * KEPT {
             sink.warn(0..1, "w", "m", "");
         }

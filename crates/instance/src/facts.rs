@@ -4,6 +4,7 @@ use std::collections::BTreeMap;
 
 use crate::complaint::{grouped, plural};
 use crate::instance::Points;
+use crate::pace::Pace;
 use crate::square::Square;
 use crate::triangle::{EVERY_TRIPLE, Scaled, triangles};
 
@@ -57,7 +58,7 @@ pub(crate) fn is_unit(word: &str) -> bool {
 }
 
 /// Every sentence on a square. O(n³) up to 300 stops.
-pub(crate) fn of(square: &Square, unit: &str) -> Vec<String> {
+pub(crate) async fn of(square: &Square, unit: &str, pace: &Pace) -> Vec<String> {
     let n = square.len();
     let drives = square.cells.iter().flatten().count();
     let unit = if unit.is_empty() { String::new() } else { format!(", {unit}") };
@@ -66,11 +67,12 @@ pub(crate) fn of(square: &Square, unit: &str) -> Vec<String> {
         plural(n, "stop", "stops"),
         plural(drives, "drive", "drives")
     )];
-    match Scaled::of(square) {
+    match Scaled::of(square, pace).await {
         Some(scaled) => {
             facts.push(symmetry(square, &scaled));
-            facts.push(triangle(square, &scaled));
+            facts.push(triangle(square, &scaled, pace).await);
             facts.extend(odd_values(square, &scaled));
+            pace.spend(square.cells.len()).await;
         }
         None => facts.push("The numbers are too long to be compared with each other.".to_owned()),
     }
@@ -83,12 +85,12 @@ pub(crate) fn of(square: &Square, unit: &str) -> Vec<String> {
 }
 
 /// Every sentence on a list of drives, where a missing pair is nothing to speak of. O(n²).
-pub(crate) fn of_list(square: &Square, unit: &str, costs: bool) -> Vec<String> {
+pub(crate) async fn of_list(square: &Square, unit: &str, costs: bool, pace: &Pace) -> Vec<String> {
     let drives = square.cells.iter().flatten().count();
     let unit = if unit.is_empty() { String::new() } else { format!(", {unit}") };
     let stops = plural(square.len(), "stop", "stops");
     let mut facts = vec![format!("{stops}, {}{unit}.", plural(drives, "drive", "drives"))];
-    match Scaled::of(square) {
+    match Scaled::of(square, pace).await {
         Some(scaled) if costs => {
             facts.push(symmetry(square, &scaled));
             facts.extend(odd_values(square, &scaled));
@@ -104,10 +106,14 @@ pub(crate) fn of_list(square: &Square, unit: &str, costs: bool) -> Vec<String> {
 }
 
 /// Every sentence on the arcs of a path from a start to an end, both stops. O(n²).
-pub(crate) fn of_path(square: &Square, (start, end): (&str, &str)) -> Vec<String> {
+pub(crate) async fn of_path(
+    square: &Square,
+    (start, end): (&str, &str),
+    pace: &Pace,
+) -> Vec<String> {
     let drives = plural(square.cells.iter().flatten().count(), "drive", "drives");
     let mut facts = vec![format!("{}, {drives}.", plural(square.len(), "stop", "stops"))];
-    match Scaled::of(square) {
+    match Scaled::of(square, pace).await {
         Some(scaled) => {
             facts.push(symmetry(square, &scaled));
             facts.extend(odd_values(square, &scaled));
@@ -190,8 +196,8 @@ fn symmetry(square: &Square, scaled: &Scaled) -> String {
     }
 }
 
-fn triangle(square: &Square, scaled: &Scaled) -> String {
-    let found = triangles(scaled);
+async fn triangle(square: &Square, scaled: &Scaled, pace: &Pace) -> String {
+    let found = triangles(scaled, pace).await;
     let drawn = if scaled.n > EVERY_TRIPLE { " drawn with a fixed seed" } else { "" };
     let counts = format!(
         "Triangle inequality broken for {} of {}{drawn}",
@@ -212,12 +218,12 @@ fn triangle(square: &Square, scaled: &Scaled) -> String {
 
 /// Sentences on zero, negative and huge values.
 fn odd_values(square: &Square, scaled: &Scaled) -> Vec<String> {
-    let mut sorted: Vec<i64> = scaled.values.iter().flatten().copied().collect();
-    sorted.sort_unstable();
-    let median = sorted.get(sorted.len() / 2).copied().unwrap_or(0);
+    let mut all: Vec<i64> = scaled.values.iter().flatten().copied().collect();
+    let middle = all.len() / 2;
+    let median = if all.is_empty() { 0 } else { *all.select_nth_unstable(middle).1 };
     let mut facts = Vec::new();
     let mut say = |one: &str, many: &str, advice: &str, odd: &dyn Fn(i64) -> bool| {
-        let count = sorted.iter().filter(|value| odd(**value)).count();
+        let count = all.iter().filter(|value| odd(**value)).count();
         let first = scaled.values.iter().position(|value| value.is_some_and(odd));
         if let Some(place) = first {
             let value = scaled.values[place].map_or_else(String::new, |value| scaled.text(value));
@@ -330,6 +336,7 @@ pub(crate) fn same_places(labels: &[String], points: &Points) -> Option<String> 
 mod tests {
     use super::*;
     use crate::number::Number;
+    use crate::pace::Slices;
     use crate::square::counted;
 
     fn facts(rows: &[&[i32]]) -> Vec<String> {
@@ -339,7 +346,7 @@ mod tests {
                 square.put(i, j, (value != -99).then(|| Number::from(value)));
             }
         }
-        of(&square, "minutes")
+        Slices::whole(async |pace| of(&square, "minutes", &pace).await)
     }
 
     #[test]

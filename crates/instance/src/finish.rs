@@ -3,6 +3,7 @@
 use crate::extra::Tables;
 use crate::facts;
 use crate::instance::{Instance, Points, Reader};
+use crate::pace::Pace;
 use crate::square::Square;
 
 /// What a reader of round trips found.
@@ -20,15 +21,19 @@ pub(crate) struct RoundTrip {
 }
 
 /// The instance and the sentences.
-pub(crate) fn finish(reader: Reader, trip: RoundTrip) -> (Instance, Vec<String>) {
-    let mut sentences = facts::of(&trip.square, &trip.unit);
+pub(crate) async fn finish(
+    reader: Reader,
+    trip: RoundTrip,
+    pace: &Pace,
+) -> (Instance, Vec<String>) {
+    let mut sentences = facts::of(&trip.square, &trip.unit, pace).await;
     sentences.extend(
         trip.points.as_ref().and_then(|points| facts::same_places(&trip.square.labels, points)),
     );
     sentences.extend(trip.notes);
     sentences.push(format!("Read as {}; every line was read.", trip.how));
     let Square { labels, cells } = trip.square;
-    let mut instance = Instance::round_trip(labels, &cells);
+    let mut instance = Instance::round_trip_in_slices(labels, &cells, pace).await;
     instance.title = trip.title;
     instance.unit = trip.unit;
     instance.reader = reader;

@@ -3,6 +3,7 @@
 use std::collections::{BTreeMap, BTreeSet};
 
 use crate::number::Number;
+use crate::pace::{Pace, Slices};
 
 /// A way to read a text.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -150,6 +151,9 @@ pub struct Instance {
     pub(crate) data: Vec<(String, Datum)>,
 }
 
+/// What it takes to write down a drive, in ticks.
+const TICKS_OF_A_DRIVE: usize = 8;
+
 impl Instance {
     /// An instance that holds nothing yet.
     #[must_use]
@@ -170,11 +174,21 @@ impl Instance {
     /// `c`, and assumes `A`, `r` and, where `c` is symmetric, `E` (pairs in the order of listing).
     #[must_use]
     pub fn round_trip(labels: Vec<String>, cells: &[Option<Number>]) -> Self {
+        Slices::whole(async |pace| Self::round_trip_in_slices(labels, cells, &pace).await)
+    }
+
+    /// As [`Self::round_trip`], in the slices of a pace.
+    pub(crate) async fn round_trip_in_slices(
+        labels: Vec<String>,
+        cells: &[Option<Number>],
+        pace: &Pace,
+    ) -> Self {
         let n = labels.len();
         let at = |i: usize, j: usize| if i == j { None } else { cells.get(i * n + j)?.as_ref() };
         let pair = |i: usize, j: usize| vec![labels[i].clone(), labels[j].clone()];
         let (mut drives, mut edges, mut symmetric) = (Vec::new(), Vec::new(), true);
         for i in 0..n {
+            pace.spend(TICKS_OF_A_DRIVE * n).await;
             for j in 0..n {
                 symmetric &= at(i, j) == at(j, i);
                 if at(i, j).is_some() {
@@ -183,14 +197,23 @@ impl Instance {
             }
         }
         if symmetric {
-            let ups = (0..n).flat_map(|i| (i + 1..n).map(move |j| (i, j)));
-            edges.extend(ups.filter(|&(i, j)| at(i, j).is_some()).map(|(i, j)| pair(i, j)));
+            for i in 0..n {
+                pace.spend(TICKS_OF_A_DRIVE * (n - i)).await;
+                let ups = (i + 1..n).filter(|&j| at(i, j).is_some());
+                edges.extend(ups.map(|j| pair(i, j)));
+            }
         }
         // A map is built fast from entries in the order of its keys.
         let mut sorted: Vec<usize> = (0..n).collect();
         sorted.sort_by_key(|&i| &labels[i]);
-        let entries = sorted.iter().flat_map(|&i| sorted.iter().map(move |&j| (i, j)));
-        let table = entries.filter_map(|(i, j)| Some((pair(i, j), at(i, j)?.clone()))).collect();
+        let mut entries = Vec::with_capacity(drives.len());
+        for &i in &sorted {
+            pace.spend(TICKS_OF_A_DRIVE * n).await;
+            let row = sorted.iter().filter_map(|&j| Some((pair(i, j), at(i, j)?.clone())));
+            entries.extend(row);
+        }
+        let table = entries.into_iter().collect();
+        pace.spend(TICKS_OF_A_DRIVE * n * n).await;
         let root = labels.first().cloned();
         let mut instance = Self::new(Reader::Matrix);
         instance.set("V", Datum::Labels(labels));
@@ -254,6 +277,11 @@ impl Instance {
     /// when the instance is no round trip. O(n² log n).
     #[must_use]
     pub fn matrix(&self) -> Vec<Option<&Number>> {
+        Slices::whole(async |pace| self.matrix_in_slices(&pace).await)
+    }
+
+    /// As [`Self::matrix`], in the slices of a pace.
+    pub async fn matrix_in_slices(&self, pace: &Pace) -> Vec<Option<&Number>> {
         let Some(Datum::Table { arity: 2, cells }) = self.get("c") else { return Vec::new() };
         let stops = self.stops();
         let places: BTreeMap<&str, usize> =
@@ -261,6 +289,7 @@ impl Instance {
         let mut matrix = vec![None; stops.len() * stops.len()];
         let mut last = None;
         for (pair, number) in cells {
+            pace.spend(TICKS_OF_A_DRIVE).await;
             let [from, to] = pair.as_slice() else { continue };
             // Keys come in order: the first of a pair is mostly that of the pair before.
             let i = match last {

@@ -10,6 +10,7 @@
 use crate::geo::project;
 use crate::instance::Instance;
 use crate::number::Number;
+use crate::pace::{Pace, Slices};
 
 /// Places of the stops in the order of `V`.
 #[derive(Debug, Clone, PartialEq)]
@@ -24,17 +25,23 @@ pub struct Layout {
 /// iteration, with fewer steps above 300 stops.
 #[must_use]
 pub fn layout(instance: &Instance) -> Layout {
+    Slices::whole(|pace| layout_in_slices(instance, pace))
+}
+
+/// As [`layout()`], in the slices of a pace.
+pub async fn layout_in_slices(instance: &Instance, pace: Pace) -> Layout {
     if let Some(points) = &instance.points {
         let places =
             if points.geographic { project(&points.places) } else { points.places.clone() };
         return Layout { places: fit(&places), computed: false };
     }
-    let matrix = instance.matrix();
+    let matrix = instance.matrix_in_slices(&pace).await;
     if matrix.is_empty() {
         return Layout { places: Vec::new(), computed: true };
     }
-    let distances = symmetrised(&matrix, instance.stops().len());
-    Layout { places: fit(&scaling(distances, instance.stops().len())), computed: true }
+    let n = instance.stops().len();
+    let distances = symmetrised(&matrix, n, &pace).await;
+    Layout { places: fit(&scaling(distances, n, &pace).await), computed: true }
 }
 
 /// Moves and scales places into the unit square, the shorter side in the middle. O(n).
@@ -61,11 +68,12 @@ fn fit(places: &[(f64, f64)]) -> Vec<(f64, f64)> {
 }
 
 /// Means of both directions; a pair without drive gets the largest distance. O(n²).
-fn symmetrised(matrix: &[Option<&Number>], n: usize) -> Vec<f64> {
+async fn symmetrised(matrix: &[Option<&Number>], n: usize, pace: &Pace) -> Vec<f64> {
     let float = |number: &Number| number.to_f64().value() + 0.0;
     let mut distances = vec![f64::NAN; n * n];
     let mut most = 0.0;
     for i in 0..n {
+        pace.spend(8 * n).await;
         for j in 0..n {
             let value = match (matrix[i * n + j], matrix[j * n + i]) {
                 (Some(there), Some(back)) => (float(there) + float(back)) * 0.5,
@@ -93,19 +101,19 @@ fn symmetrised(matrix: &[Option<&Number>], n: usize) -> Vec<f64> {
 }
 
 /// Classical scaling to two dimensions.
-fn scaling(distances: Vec<f64>, n: usize) -> Vec<(f64, f64)> {
+async fn scaling(distances: Vec<f64>, n: usize, pace: &Pace) -> Vec<(f64, f64)> {
     let steps = if n <= 300 { 300 } else { 90_000 * 300 / (n * n) + 20 };
     let mut b = centred(distances, n);
-    let (leading, _) = power(&b, n, 0.0, steps);
-    let (lowest, _) = power(&b, n, -leading, steps);
+    let (leading, _) = power(&b, (n, steps), 0.0, pace).await;
+    let (lowest, _) = power(&b, (n, steps), -leading, pace).await;
     let sigma = [leading, lowest].into_iter().fold(
         0.0,
         |most, value| {
             if -value > most { -value } else { most }
         },
     );
-    let first = axis(&mut b, n, sigma, steps);
-    let second = axis(&mut b, n, sigma, steps);
+    let first = axis(&mut b, (n, steps), sigma, pace).await;
+    let second = axis(&mut b, (n, steps), sigma, pace).await;
     first.into_iter().zip(second).collect()
 }
 
@@ -127,13 +135,14 @@ fn centred(mut d: Vec<f64>, n: usize) -> Vec<f64> {
 }
 
 /// The eigenvalue of B for the eigenvalue of B + σI of largest size, and a unit eigenvector.
-fn power(b: &[f64], n: usize, sigma: f64, steps: usize) -> (f64, Vec<f64>) {
+async fn power(b: &[f64], (n, steps): (usize, usize), sigma: f64, pace: &Pace) -> (f64, Vec<f64>) {
     let mut v: Vec<f64> = (0..n).map(|i| 1.0 + ((i * 7 + 3) % 11) as f64).collect();
     let mut next = vec![0.0; n];
     let mut value = 0.0;
     normalise(&mut v);
     for _ in 0..steps {
         value = 0.0;
+        pace.spend(n * n / 8).await;
         for i in 0..n {
             let row = &b[i * n..(i + 1) * n];
             let product: f64 = row.iter().zip(&v).map(|(entry, x)| entry * x).sum();
@@ -162,8 +171,8 @@ fn normalise(v: &mut [f64]) -> bool {
 
 /// The leading axis of B, which is then taken out of B. The coordinate of largest size is made
 /// positive.
-fn axis(b: &mut [f64], n: usize, sigma: f64, steps: usize) -> Vec<f64> {
-    let (value, v) = power(b, n, sigma, steps);
+async fn axis(b: &mut [f64], (n, steps): (usize, usize), sigma: f64, pace: &Pace) -> Vec<f64> {
+    let (value, v) = power(b, (n, steps), sigma, pace).await;
     for i in 0..n {
         for j in 0..n {
             b[i * n + j] -= (value + sigma) * v[i] * v[j];

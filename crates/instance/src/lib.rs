@@ -36,6 +36,7 @@ mod library;
 mod matrix;
 mod names;
 mod number;
+mod pace;
 mod points;
 mod read;
 mod restrict;
@@ -49,9 +50,10 @@ mod tsplib;
 
 pub use complaint::{Complaint, Severity};
 pub use instance::{Datum, Instance, Points, Reader};
-pub use layout::{Layout, layout};
+pub use layout::{Layout, layout, layout_in_slices};
 pub use number::{Number, number_text};
-pub use read::{Reading, read, read_part};
+pub use pace::{Pace, Slices};
+pub use read::{Reading, read, read_in_slices, read_part};
 
 /// The longest text that is read, in bytes.
 pub const MAX_TEXT: usize = 8 << 20;

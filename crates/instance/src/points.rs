@@ -15,6 +15,7 @@ use crate::geo;
 use crate::instance::Points;
 use crate::matrix::{Row, Table, table};
 use crate::number::{Number, parse};
+use crate::pace::Pace;
 use crate::square::{Square, counted};
 
 const ACROSS: [&str; 3] = ["x", "east", "easting"];
@@ -68,8 +69,12 @@ impl Columns {
 }
 
 /// Reads points; as latitude and longitude when `geographic` or when the heading says so. O(n²).
-pub(crate) fn read(text: &str, geographic: bool, sink: &mut Complaints) -> Option<RoundTrip> {
-    let Table { title, style, rows } = table(text, sink)?;
+pub(crate) async fn read(
+    text: &str,
+    geographic: bool,
+    sink: &mut Complaints<'_>,
+) -> Option<RoundTrip> {
+    let Table { title, style, rows } = table(text, sink).await?;
     let (columns, body) = columns(&rows, geographic);
     let mut labels = Vec::new();
     let mut points = Vec::new();
@@ -100,10 +105,12 @@ pub(crate) fn read(text: &str, geographic: bool, sink: &mut Complaints) -> Optio
     let tables = extra::tables((&rows[0], body), (&labels, further), style, &mut notes, sink);
     let float = |number: &Number| number.to_f64().value() + 0.0;
     let places: Vec<_> = points.iter().map(|(x, y)| (float(x), float(y))).collect();
+    let pace = sink.pace();
     let (square, what) = if columns.geographic {
-        (square(labels, &places, |from, to| geo::distance(*from, *to)), "points on the globe")
+        let distance = |from: &(f64, f64), to: &(f64, f64)| geo::distance(*from, *to);
+        (square(labels, &places, distance, &pace).await, "points on the globe")
     } else {
-        (square(labels, &points, distance), "points in the plane")
+        (square(labels, &points, distance, &pace).await, "points in the plane")
     };
     let separator = style.separator.name();
     Some(RoundTrip {
@@ -239,9 +246,15 @@ fn check_labels(labels: &[&Cell], sink: &mut Complaints) {
 }
 
 /// The square of a symmetric distance of points.
-fn square<P>(labels: Vec<String>, places: &[P], distance: impl Fn(&P, &P) -> Number) -> Square {
+async fn square<P>(
+    labels: Vec<String>,
+    places: &[P],
+    distance: impl Fn(&P, &P) -> Number,
+    pace: &Pace,
+) -> Square {
     let mut square = Square::empty(labels);
     for (i, from) in places.iter().enumerate() {
+        pace.spend(32 * (places.len() - i)).await;
         for (j, to) in places.iter().enumerate().skip(i + 1) {
             let value = distance(from, to);
             square.put(i, j, Some(value.clone()));

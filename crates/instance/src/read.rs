@@ -4,6 +4,7 @@ use crate::complaint::{Complaint, Complaints, grouped};
 use crate::finish::finish;
 use crate::instance::{Instance, Reader};
 use crate::library::{self, Found};
+use crate::pace::{Pace, Slices};
 use crate::sniff::guess;
 use crate::{MAX_TEXT, arcs, blocks, matrix, points, sums, table, tsplib};
 
@@ -34,11 +35,25 @@ pub fn read(text: &str, reader: Option<Reader>) -> Reading {
 /// As [`read()`]; of a file that holds several instances, the one of that number, from 1.
 #[must_use]
 pub fn read_part(text: &str, reader: Option<Reader>, part: Option<usize>) -> Reading {
+    Slices::whole(|pace| read_in_slices(text, reader, part, pace))
+}
+
+/// As [`read_part()`], in the slices of a pace.
+pub async fn read_in_slices(
+    text: &str,
+    reader: Option<Reader>,
+    part: Option<usize>,
+    pace: Pace,
+) -> Reading {
     if text.len() > MAX_TEXT {
         return too_long(text, reader.unwrap_or(Reader::Matrix));
     }
-    let mut sink = Complaints::new(text);
-    let chosen = reader.unwrap_or_else(|| guess(text));
+    let mut sink = Complaints::new(text, &pace);
+    pace.spend(text.len()).await;
+    let chosen = match reader {
+        Some(reader) => reader,
+        None => guess(text, &pace).await,
+    };
     if let Some((at, c)) = text.char_indices().find(|(_, c)| is_binary(*c)) {
         let mend = "Paste text: export the table as CSV, or copy its cells.";
         sink.error(at..at + c.len_utf8(), "binary", "this is no text but a binary file", mend);
@@ -48,7 +63,7 @@ pub fn read_part(text: &str, reader: Option<Reader>, part: Option<usize>) -> Rea
         sink.error(span, "no-instance", message, mend);
         return refused(chosen, sink, Vec::new());
     }
-    let found = with(chosen, text, part, &mut sink);
+    let found = with(chosen, text, part, &mut sink).await;
     let guessed = reader.is_none().then(|| {
         format!(
             "Taken for {} (`{}`); name another reader if it is not.",
@@ -60,7 +75,7 @@ pub fn read_part(text: &str, reader: Option<Reader>, part: Option<usize>) -> Rea
         Some(Found { instance, mut facts, parts }) if sink.errors() == 0 => {
             facts.extend(sink.habits());
             facts.extend(guessed);
-            let sums = sums::of(&instance);
+            let sums = sums::of(&instance, &pace).await;
             sink.doubt_thousands();
             let complaints = sink.finish();
             Reading { instance: Some(instance), facts, complaints, reader: chosen, parts, sums }
@@ -75,21 +90,25 @@ pub fn read_part(text: &str, reader: Option<Reader>, part: Option<usize>) -> Rea
     }
 }
 
-fn with<'a>(
+async fn with<'a>(
     reader: Reader,
     text: &'a str,
     part: Option<usize>,
     sink: &mut Complaints<'a>,
 ) -> Option<Found> {
     let (instance, facts) = match reader {
-        Reader::Matrix => finish(reader, matrix::read(text, sink)?),
-        Reader::Points => finish(reader, points::read(text, false, sink)?),
-        Reader::Geographic => finish(reader, points::read(text, true, sink)?),
-        Reader::Arcs => arcs::read(text, sink)?,
-        Reader::Table => table::read(text, sink)?,
-        Reader::Tsplib => finish(reader, tsplib::read(text, sink)?),
-        Reader::Blocks => blocks::read(text, sink)?,
-        _ => return library::read(text, reader, part, sink),
+        Reader::Matrix => finish(reader, matrix::read(text, sink).await?, &sink.pace()).await,
+        Reader::Points => {
+            finish(reader, points::read(text, false, sink).await?, &sink.pace()).await
+        }
+        Reader::Geographic => {
+            finish(reader, points::read(text, true, sink).await?, &sink.pace()).await
+        }
+        Reader::Arcs => arcs::read(text, sink).await?,
+        Reader::Table => table::read(text, sink).await?,
+        Reader::Tsplib => finish(reader, tsplib::read(text, sink).await?, &sink.pace()).await,
+        Reader::Blocks => blocks::read(text, sink).await?,
+        _ => return library::read(text, reader, part, sink).await,
     };
     Some(Found { instance, facts, parts: Vec::new() })
 }
@@ -134,7 +153,7 @@ fn refused(reader: Reader, sink: Complaints, mut facts: Vec<String>) -> Reading 
 }
 
 fn too_long(text: &str, reader: Reader) -> Reading {
-    let mut sink = Complaints::new("");
+    let mut sink = Complaints::new("", &Pace::default());
     let megabytes = text.len().div_ceil(1 << 20);
     let message = format!("the text is {megabytes} MB long; {} MB are read", MAX_TEXT >> 20);
     sink.error(0..0, "too-long", message, "Paste a smaller instance.");

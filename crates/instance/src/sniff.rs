@@ -7,6 +7,7 @@ use crate::cells::{Separator, Style, is_word, split, style};
 use crate::instance::Reader;
 use crate::matrix::is_title;
 use crate::number::parse;
+use crate::pace::Pace;
 use crate::text::{Line, lines};
 use crate::{arcs, library, points, table, tsplib};
 
@@ -17,7 +18,7 @@ const LOOKED_AT: usize = 400;
 /// that add up, blocks by their headings, points by a heading of
 /// coordinates, drives by their ends or by a line on directions, tables by headings that are no
 /// labels of rows, points by two numbers a row, else a matrix. O(length).
-pub(crate) fn guess(text: &str) -> Reader {
+pub(crate) async fn guess(text: &str, pace: &Pace) -> Reader {
     let all = lines(text);
     let found: Vec<Line> = all
         .iter()
@@ -28,7 +29,7 @@ pub(crate) fn guess(text: &str) -> Reader {
     if found.iter().any(|line| tsplib::is_telling(line.text)) {
         return Reader::Tsplib;
     }
-    if let Some(reader) = library::guess(text) {
+    if let Some(reader) = library::guess(text, pace).await {
         return reader;
     }
     if found.iter().any(|line| is_by_heading(line.text) || is_equation(line.text)) {
@@ -43,7 +44,7 @@ pub(crate) fn guess(text: &str) -> Reader {
     if found.first().is_some_and(|line| arcs::direction(line.text).is_some()) {
         return Reader::Arcs;
     }
-    guess_by_rows(text, found)
+    guess_by_rows(text, found, pace).await
 }
 
 /// A name alone on its line, then a line of words: `N` and `a b c d`.
@@ -56,12 +57,14 @@ fn is_one_set(found: &[Line]) -> bool {
     matches!(&name[..], [one] if is_word(one, true) && !members.contains(one)) && words
 }
 
-fn guess_by_rows(text: &str, found: &[Line]) -> Reader {
+async fn guess_by_rows(text: &str, found: &[Line<'_>], pace: &Pace) -> Reader {
     let style = style(found);
-    let rows: Vec<Vec<String>> = found
-        .iter()
-        .map(|line| split(line, style.separator).into_iter().map(|c| c.text.into()).collect())
-        .collect();
+    let mut rows: Vec<Vec<String>> = Vec::with_capacity(found.len());
+    for line in found {
+        pace.spend(2 * line.text.len()).await;
+        rows.push(split(line, style.separator).into_iter().map(|c| c.text.into()).collect());
+    }
+    let cells = rows.iter().map(Vec::len).sum::<usize>();
     let Some((first, body)) = rows.split_first() else { return Reader::Matrix };
     // A matrix may have stops called x and y, or from and to: its rows are called so too.
     let common = body.iter().any(|row| row.first().is_some_and(|label| first.contains(label)));
@@ -70,9 +73,12 @@ fn guess_by_rows(text: &str, found: &[Line]) -> Reader {
         Some(_) if !common => return Reader::Points,
         _ => {}
     }
-    if are_arcs(&filled(&rows, style), common, style) {
+    pace.spend(4 * cells).await;
+    let filled = filled(&rows, style);
+    pace.spend(4 * cells).await;
+    if are_arcs(&filled, common, style) {
         Reader::Arcs
-    } else if table::is_likely(&text[..found.last().map_or(0, Line::end)]) {
+    } else if table::is_likely(&text[..found.last().map_or(0, Line::end)], pace).await {
         Reader::Table
     } else if are_points(&rows, style) {
         Reader::Points
@@ -197,7 +203,8 @@ mod tests {
             ("client demand\na 3\nb 4\n\nclient depot cost\na p 3\nb q 4", Reader::Table),
             ("Round, in minutes\n\n;a;b\na;0;1\nb;2;0", Reader::Matrix),
         ] {
-            assert_eq!(guess(text), reader, "{text}");
+            let found = crate::pace::Slices::whole(async |pace| guess(text, &pace).await);
+            assert_eq!(found, reader, "{text}");
         }
     }
 }

@@ -1,6 +1,7 @@
 //! Distances over stops as a square, on the way from a reader to an instance.
 
 use crate::number::Number;
+use crate::pace::Pace;
 
 /// A square of distances: `cells` by rows, `None` on the diagonal and where there is no drive.
 #[derive(Debug, Clone, PartialEq)]
@@ -17,9 +18,14 @@ impl Square {
     }
 
     /// The square of a function of two stops.
-    pub(crate) fn of(labels: Vec<String>, mut value: impl FnMut(usize, usize) -> Number) -> Self {
+    pub(crate) async fn of(
+        labels: Vec<String>,
+        mut value: impl FnMut(usize, usize) -> Number,
+        pace: &Pace,
+    ) -> Self {
         let mut square = Self::empty(labels);
         for i in 0..square.len() {
+            pace.spend(8 * square.len()).await;
             for j in 0..square.len() {
                 if i != j {
                     square.put(i, j, Some(value(i, j)));

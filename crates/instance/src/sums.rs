@@ -6,31 +6,45 @@ use std::collections::BTreeSet;
 use crate::complaint::{grouped, plural};
 use crate::instance::{Datum, Instance};
 use crate::number::{Number, number_text, total_text};
+use crate::pace::Pace;
 
 /// A sentence for each table of numbers. O(cells · log).
-pub(crate) fn of(instance: &Instance) -> Vec<String> {
-    let tables = instance.data().filter_map(|(name, datum)| match datum {
-        Datum::Table { arity, cells } if !instance.assumed.contains(name) => {
-            Some((name, *arity, cells))
+pub(crate) async fn of(instance: &Instance, pace: &Pace) -> Vec<String> {
+    let mut sentences = Vec::new();
+    for (name, datum) in instance.data() {
+        let Datum::Table { arity, cells } = datum else { continue };
+        if cells.is_empty() || instance.assumed.contains(name) {
+            continue;
         }
-        _ => None,
-    });
-    let tables = tables.filter(|(.., cells)| !cells.is_empty());
-    let sentences = tables.map(|(name, arity, cells)| {
-        let values: Vec<&Number> = cells.values().collect();
         let unit = instance.units.get(name).filter(|unit| !unit.is_empty());
         let unit = unit.map_or_else(String::new, |unit| format!(" {unit}"));
-        let places: Vec<usize> = (0..arity)
-            .map(|place| cells.keys().map(|key| &key[place]).collect::<BTreeSet<_>>().len())
-            .collect();
-        format!(
-            "{name}: {}{unit}, {}{}.",
-            numbers(&values),
-            spread(&values),
-            filled(&places, cells.len())
-        )
-    });
-    sentences.collect()
+        let values: Vec<&Number> = cells.values().collect();
+        pace.spend(4 * cells.len()).await;
+        let numbers = numbers(&values);
+        pace.spend(4 * cells.len()).await;
+        let spread = spread(&values);
+        let mut places = Vec::with_capacity(*arity);
+        for place in 0..*arity {
+            places.push(labels(cells.keys().map(|key| key[place].as_str()), pace).await);
+        }
+        let filled = filled(&places, cells.len());
+        sentences.push(format!("{name}: {numbers}{unit}, {spread}{filled}."));
+    }
+    sentences
+}
+
+/// How many labels are different.
+async fn labels<'l>(all: impl Iterator<Item = &'l str>, pace: &Pace) -> usize {
+    let (mut seen, mut last) = (BTreeSet::new(), None);
+    for label in all {
+        pace.spend(2).await;
+        // keys come in order: the first of them is mostly that before
+        if last != Some(label) {
+            seen.insert(label);
+        }
+        last = Some(label);
+    }
+    seen.len()
 }
 
 /// "306 numbers from 4 to 37, sum 5,312"

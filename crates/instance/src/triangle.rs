@@ -4,6 +4,7 @@ use dashu_int::{IBig, UBig, ops::Gcd};
 use dashu_ratio::RBig;
 
 use crate::number::number_text;
+use crate::pace::Pace;
 use crate::square::Square;
 
 /// Up to this many stops every triple is looked at.
@@ -20,9 +21,10 @@ pub(crate) struct Scaled {
 
 impl Scaled {
     /// `None` when the numbers are too long for sums in 64 bits.
-    pub(crate) fn of(square: &Square) -> Option<Self> {
+    pub(crate) async fn of(square: &Square, pace: &Pace) -> Option<Self> {
         let mut denominator = UBig::ONE;
         for number in square.cells.iter().flatten() {
+            pace.spend(2).await;
             if !(&denominator % number.denominator()).is_zero() {
                 let common = (&denominator).gcd(number.denominator());
                 denominator = denominator / common * number.denominator();
@@ -36,6 +38,7 @@ impl Scaled {
         };
         let mut values = Vec::with_capacity(square.cells.len());
         for cell in &square.cells {
+            pace.spend(2).await;
             values.push(match cell {
                 Some(number) => Some(scale(number)?),
                 None => None,
@@ -101,12 +104,13 @@ impl Triangles {
 
 /// Looks at every triple up to [`EVERY_TRIPLE`] stops, else at [`DRAWN`] ones drawn with a fixed
 /// seed. O(n³), or O(drawn).
-pub(crate) fn triangles(scaled: &Scaled) -> Triangles {
+pub(crate) async fn triangles(scaled: &Scaled, pace: &Pace) -> Triangles {
     let mut found = Triangles::default();
     let n = scaled.n;
     if n <= EVERY_TRIPLE {
         for i in 0..n {
             for k in (0..n).filter(|&k| k != i) {
+                pace.spend(n / 8).await;
                 found.look_by_way_of(scaled, i, k);
             }
         }
@@ -114,6 +118,7 @@ pub(crate) fn triangles(scaled: &Scaled) -> Triangles {
     }
     let mut draw = Draw(1);
     for _ in 0..DRAWN {
+        pace.spend(1).await;
         let [i, k, j] = [draw.below(n), draw.below(n), draw.below(n)];
         if i != k && k != j && i != j {
             found.look(scaled, [i, k, j]);
@@ -137,15 +142,28 @@ impl Draw {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::pace::Slices;
     use crate::square::counted;
+
+    fn scaled(square: &Square) -> Option<Scaled> {
+        Slices::whole(async |pace| Scaled::of(square, &pace).await)
+    }
+
+    fn looked(scaled: &Scaled) -> Triangles {
+        Slices::whole(async |pace| triangles(scaled, &pace).await)
+    }
+
+    fn square(labels: Vec<String>, value: impl FnMut(usize, usize) -> RBig) -> Square {
+        Slices::whole(async |pace| Square::of(labels, value, &pace).await)
+    }
 
     #[test]
     fn the_worst_triple_is_found() {
-        let mut square = Square::of(counted(4), |_, _| RBig::from_parts(1.into(), 2_u8.into()));
+        let mut square = self::square(counted(4), |_, _| RBig::from_parts(1.into(), 2_u8.into()));
         square.put(0, 2, Some(RBig::from(3)));
         square.put(3, 1, None);
-        let scaled = Scaled::of(&square).unwrap();
-        let found = triangles(&scaled);
+        let scaled = self::scaled(&square).unwrap();
+        let found = looked(&scaled);
         // Of 24 triples, 6 use the drive 4 → 2; 1 → 3 breaks by way of 2 and of 4.
         assert_eq!((found.examined, found.broken), (18, 2));
         assert_eq!(found.worst, Some((4, [0, 1, 2])));
@@ -155,16 +173,16 @@ mod tests {
     #[test]
     fn large_ones_are_drawn_alike_each_time() {
         let n = EVERY_TRIPLE + 1;
-        let square = Square::of(counted(n), |i, j| RBig::from(u32::from(i == 5 && j != 7) + 1));
-        let scaled = Scaled::of(&square).unwrap();
-        let found = triangles(&scaled);
+        let square = self::square(counted(n), |i, j| RBig::from(u32::from(i == 5 && j != 7) + 1));
+        let scaled = self::scaled(&square).unwrap();
+        let found = looked(&scaled);
         assert!(found.examined > DRAWN * 9 / 10 && found.broken == 0);
-        assert_eq!(triangles(&scaled), found);
+        assert_eq!(looked(&scaled), found);
     }
 
     #[test]
     fn numbers_too_long_are_not_compared() {
         let long = |i: usize, _| RBig::from_parts(1.into(), UBig::from(10_u8).pow(36 + i) + 1_u8);
-        assert!(Scaled::of(&Square::of(counted(3), long)).is_none());
+        assert!(scaled(&square(counted(3), long)).is_none());
     }
 }

@@ -156,7 +156,11 @@ impl Model {
         while grown * 10.0 <= most && decades < 300 {
             (grown, decades) = (grown * 10.0, decades + 1);
         }
-        let wide = if decades > 3 { format!(" ({decades} powers of ten)") } else { String::new() };
+        let wide = match decades {
+            0 => " (within one power of ten)".to_owned(),
+            1 => " (1 power of ten)".to_owned(),
+            more => format!(" ({more} powers of ten)"),
+        };
         let range = if same(least, most) {
             text(least)
         } else {
@@ -317,7 +321,7 @@ mod tests {
             model.describe(),
             [
                 "4 rows, 5 columns (2 of them 0 or 1), 6 non-zeros: 30.0 % of the matrix, 1.5 a row.",
-                "Costs: 4 not 0, 1 to 7 in size.",
+                "Costs: 4 not 0, 1 to 7 (within one power of ten) in size.",
                 "r1: 1 row, coefficients 3 in size, sides other than 0 4 in size.",
                 "r2: 1 row, coefficients 3 in size, sides other than 0 4 in size.",
                 "r3: 1 row, coefficients 0.001 to 1000000 (9 powers of ten) in size, sides other than 0 5 in size.",
@@ -339,7 +343,7 @@ mod tests {
         assert_eq!(
             model.describe()[1..],
             [
-                "Costs: 2 not 0, 1 to 2 in size.",
+                "Costs: 2 not 0, 1 to 2 (within one power of ten) in size.",
                 "r: 1 row, coefficients 1 in size, sides other than 0 1 in size.",
                 "All coefficients: 1 in size; they add up to 2.",
             ]

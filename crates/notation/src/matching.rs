@@ -10,6 +10,7 @@ use crate::bind::noun;
 use crate::check::Checked;
 use crate::diagnostic::{Diagnostic, data as message};
 use crate::plan::{Root, Shape, Symbol, SymbolId};
+use crate::syntax::plain;
 
 /// How a datum was found.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -82,7 +83,9 @@ pub fn matches(
         Matcher { text, symbols, instance, taken: BTreeMap::new(), reasons: BTreeMap::new() };
     for &id in &lines {
         let name = &symbols[id].name;
-        if let Some(given) = names.get(name) {
+        // the mark of `K_` stands in links of earlier versions
+        let given = names.get(&called(text, &symbols[id])).or_else(|| names.get(name));
+        if let Some(given) = given {
             matcher.taken.insert(id, (given.clone(), Found::Given));
         } else if instance.get(name).is_some() {
             matcher.taken.insert(id, (name.clone(), Found::Named));
@@ -115,14 +118,29 @@ pub fn assumed(
 ) -> (BTreeMap<String, String>, Vec<Diagnostic>) {
     let mut all = names.clone();
     let mut notes = Vec::new();
-    for line in matches(text, checked, instance, names) {
-        if let (Found::Assumed, Some(taken)) = (line.found, line.taken) {
-            let symbol = checked.plan.symbols.iter().find(|symbol| symbol.name == line.name);
-            notes.extend(symbol.map(|symbol| message::matched(&line.name, &taken, symbol.span)));
-            all.insert(line.name, taken);
+    let symbols = checked.plan.symbols.iter().filter(|symbol| symbol.datum);
+    for (line, symbol) in matches(text, checked, instance, names).into_iter().zip(symbols) {
+        match (line.found, line.taken) {
+            (Found::Assumed, Some(taken)) => {
+                notes.push(message::matched(&line.name, &taken, symbol.span));
+                all.insert(symbol.name.clone(), taken);
+            }
+            (Found::Given, Some(taken)) => {
+                all.insert(symbol.name.clone(), taken);
+            }
+            _ => {}
         }
     }
     (all, notes)
+}
+
+/// The name by which a person binds a line: `K_i` beside a set `K`, as it is written; else the name.
+fn called(text: &str, symbol: &Symbol) -> String {
+    if plain(&symbol.name) == symbol.name {
+        return symbol.name.clone();
+    }
+    let written = text.get(symbol.span.range()).unwrap_or(&symbol.name);
+    written.chars().filter(|c| !c.is_whitespace()).collect()
 }
 
 /// `J` of `\mathcal J`: a name that is set in a type of its own; a bar or a hat is no type.
@@ -236,7 +254,8 @@ impl Matcher<'_> {
                     .taken
                     .keys()
                     .filter(|&&other| self.symbols[other].roots.contains(&Root::Set(id)));
-                let names: Vec<&str> = indexed.map(|&other| &*self.symbols[other].name).collect();
+                let names: Vec<String> =
+                    indexed.map(|&other| called(self.text, &self.symbols[other])).collect();
                 if names.is_empty() {
                     return "the only set that fits".to_owned();
                 }
@@ -282,7 +301,7 @@ impl Matcher<'_> {
             .collect();
         offers.sort_by_key(|offer| !offer.fits);
         Match {
-            name: symbol.name.clone(),
+            name: called(self.text, symbol),
             at: symbol.span.range().start,
             meaning: meaning(self.text, symbol),
             taken: taken.map(|(name, _)| name.clone()),
@@ -404,6 +423,29 @@ mod tests {
             .replace("haul", "c");
         let lines = matched(SPLIT, &own, &[]);
         assert!(lines.iter().all(|line| line.found == Found::Named), "{lines:?}");
+    }
+
+    /// `K_i` beside a set `K` stood in the table of names as `K_`, which no text can give.
+    #[test]
+    fn a_name_beside_its_set_is_called_as_it_is_written() {
+        let text = "data\n  I  crews\n  K  days\n  K_{i}  ∀ i ∈ I  days off of a crew\nminimise\n  \
+            Σ_{i ∈ I} x_i\nsubject to\n  x_i ≥ K_i + |K|  ∀ i ∈ I  (least)\n  x_i ≥ 0  ∀ i ∈ I\n";
+        let table = "I\na b\n\nK\nMo Tu\n\noff by i\na 1\nb 2\n\nleave by i\na 3\nb 4\n";
+        let names = |names: &[(&str, &str)]| taken_of(&matched(text, table, names));
+        assert_eq!(names(&[]), ["I: I", "K: K", "K_{i}: off"]);
+        assert_eq!(names(&[("K_{i}", "leave")])[2], "K_{i}: leave");
+        assert_eq!(names(&[("K_", "leave")])[2], "K_{i}: leave");
+        let checked = crate::check(&crate::parse(text).tree).0;
+        let instance = instance::read(table, None).instance.unwrap();
+        let given = BTreeMap::from([("K_{i}".to_owned(), "leave".to_owned())]);
+        let (names, _) = assumed(text, &checked, &instance, &given);
+        assert!(crate::bind(&checked, &instance, &names).is_ok());
+        assert_eq!((checked.data(), names["K_"].as_str()), (vec!["I", "K", "K"], "leave"));
+    }
+
+    fn taken_of(lines: &[Match]) -> Vec<String> {
+        let taken = |line: &Match| line.taken.clone().unwrap_or_default();
+        lines.iter().map(|line| format!("{}: {}", line.name, taken(line))).collect()
     }
 
     /// A paper's script letter is a table's plain one, unless the paper has both.

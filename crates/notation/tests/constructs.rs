@@ -383,7 +383,7 @@ fn mends_can_be_applied() {
 #[test]
 fn a_name_without_indices_is_mended_to_a_domain_line() {
     use hullward_notation::{check, parse};
-    let text = "minimise\n  z\nsubject to\n  2 z ≥ 1  (one)\n";
+    let text = "minimise\n  3 z\nsubject to\n  2 z ≥ 1  (one)\n";
     let (_, found) = check(&parse(text).tree);
     let edit = found[0].mends[0].edit.as_ref().unwrap();
     let mut mended = text.to_owned();

@@ -121,3 +121,9 @@ fn models_of_further_problems_come_out() {
 fn models_in_further_styles_come_out() {
     all_come_out("models/further");
 }
+
+/// Twelve more, with habits of LaTeX that are seldom but real, written down before any was tried.
+#[test]
+fn models_with_unusual_habits_come_out() {
+    all_come_out("models/habits");
+}

@@ -353,7 +353,7 @@ fn noise_and_long_names_end() {
     let huge = "(".repeat(5_000_000);
     assert_eq!(parse(&huge).diagnostics[0].code, "syntax.too-long");
     let name = "q".repeat(600_000);
-    let text = format!("minimise\n  {name}\nsubject to\n  x_{{{name}}} ≥ 1  ({name})\n");
+    let text = format!("minimise\n  2 {name}\nsubject to\n  x_{{{name}}} ≥ 1  ({name})\n");
     let (_, found) = check(&parse(&text).tree);
     let short: Vec<String> = found.iter().map(|d| d.code.to_owned()).collect();
     assert!(short.contains(&"name.undeclared".to_owned()), "{short:?}");

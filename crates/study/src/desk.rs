@@ -8,7 +8,7 @@
 use std::cell::{Cell, RefCell};
 use std::fmt;
 use std::future::{Future, poll_fn};
-use std::pin::Pin;
+use std::pin::{Pin, pin};
 use std::rc::Rc;
 use std::task::{Context, Poll, Waker};
 
@@ -74,6 +74,19 @@ impl Solved {
 }
 
 impl Desk {
+    /// Work done to its end without slices.
+    pub(crate) fn at_once<T, W: Future<Output = T>>(work: impl FnOnce(Rc<Self>) -> W) -> T {
+        let desk = Rc::new(Self::default());
+        let mut work = pin!(work(Rc::clone(&desk)));
+        loop {
+            desk.left.set(u64::MAX);
+            if let Poll::Ready(found) = work.as_mut().poll(&mut Context::from_waker(Waker::noop()))
+            {
+                return found;
+            }
+        }
+    }
+
     /// Says what is being done, as a clause.
     pub fn say(&self, doing: impl Into<String>) {
         *self.doing.borrow_mut() = doing.into();

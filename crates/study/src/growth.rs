@@ -17,7 +17,7 @@ use tree::Status;
 
 use crate::desk::Desk;
 use crate::plan::Plan;
-use crate::subject::{Source, Subject, model_of};
+use crate::subject::{Source, Subject};
 
 mod summary;
 
@@ -131,7 +131,10 @@ async fn run(
         ..Cell::default()
     };
     let source = subject.source.as_ref();
-    let model = source.and_then(|source| model_on(source, setting, generated));
+    let model = match source {
+        Some(source) => model_on(desk, source, setting, generated).await,
+        None => None,
+    };
     let Some(model) = model.map(Rc::new) else {
         return Cell { failed: "no model of that size".to_owned(), ..cell };
     };
@@ -150,12 +153,17 @@ async fn run(
     }
 }
 
-fn model_on(source: &Source, setting: &Setting, generated: Option<&Instance>) -> Option<Model> {
+async fn model_on(
+    desk: &Desk,
+    source: &Source,
+    setting: &Setting,
+    generated: Option<&Instance>,
+) -> Option<Model> {
     match (generated, setting.class) {
-        (Some(instance), _) => model_of(&source.text, instance, &BTreeMap::new(), &source.states),
+        (Some(instance), _) => source.model_on(desk, instance, &BTreeMap::new()).await,
         (None, None) => {
             let part = source.instance.part(setting.size as usize, Some(setting.seed));
-            model_of(&source.text, &part, &source.bind, &source.states)
+            source.model_on(desk, &part, &source.bind).await
         }
         (None, Some(_)) => None,
     }

@@ -6,7 +6,9 @@ use std::rc::Rc;
 use catalogue::Entry;
 use instance::Instance;
 use model::{FamilyState, Model};
-use notation::{Expansion, Limits, Progress};
+use notation::{Binding, Expansion, Limits, Progress};
+
+use crate::desk::Desk;
 
 /// A rival of a study.
 #[derive(Debug, Clone)]
@@ -41,20 +43,43 @@ pub struct Source {
 /// Models of sub-instances stay below so many non-zeros.
 const MOST_NONZEROS: usize = 200_000;
 
+/// Ticks after which a slice may end.
+const STEP: u64 = 10_000;
+
 impl Source {
     /// The model on the first `size` elements of each set; `None` where there is none.
-    #[must_use]
-    pub fn model_of_first(&self, size: usize) -> Option<Model> {
-        model_of(&self.text, &self.instance.first(size), &self.bind, &self.states)
+    pub async fn model_of_first(&self, desk: &Desk, size: usize) -> Option<Model> {
+        self.model_on(desk, &self.instance.first(size), &self.bind).await
+    }
+
+    /// The model on another instance, made in slices; `None` where it does not become one.
+    pub(crate) async fn model_on(
+        &self,
+        desk: &Desk,
+        instance: &Instance,
+        bind: &BTreeMap<String, String>,
+    ) -> Option<Model> {
+        model_in_slices(desk, (&self.text, bind), instance, &self.states).await
     }
 }
 
-/// The model of a formulation on an instance; `None` where it does not become one.
+/// The model of a formulation on an instance, at once; `None` where it does not become one.
 #[must_use]
 pub fn model_of(
     text: &str,
     instance: &Instance,
     bind: &BTreeMap<String, String>,
+    states: &BTreeMap<String, FamilyState>,
+) -> Option<Model> {
+    Desk::at_once(
+        |desk| async move { model_in_slices(&desk, (text, bind), instance, states).await },
+    )
+}
+
+async fn model_in_slices(
+    desk: &Desk,
+    (text, bind): (&str, &BTreeMap<String, String>),
+    instance: &Instance,
     states: &BTreeMap<String, FamilyState>,
 ) -> Option<Model> {
     let parse = notation::parse(text);
@@ -63,8 +88,14 @@ pub fn model_of(
         return None;
     }
     let (names, _) = notation::assumed(text, &checked, instance, bind);
-    let bound = notation::bind(&checked, instance, &names).ok()?;
-    let mut expansion = Expansion::new(bound, states, Limits { nonzeros: MOST_NONZEROS });
-    while expansion.advance(1_000_000) == Progress::Working {}
+    let mut binding = Binding::new(&checked, &names);
+    while binding.advance(STEP, instance) == Progress::Working {
+        desk.spend(STEP).await;
+    }
+    let limits = Limits { nonzeros: MOST_NONZEROS };
+    let mut expansion = Expansion::new(binding.finish().ok()?, states, limits);
+    while expansion.advance(STEP) == Progress::Working {
+        desk.spend(STEP).await;
+    }
     Some(expansion.finish().ok()?.0)
 }

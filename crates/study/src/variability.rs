@@ -15,7 +15,7 @@ use record::study::{RivalVariability, Run, Variability, VariabilityPair};
 use crate::desk::{Desk, Solved};
 use crate::plan::Plan;
 use crate::statistics::{count, interval, resampled, shifted_geometric_mean};
-use crate::subject::{Source, Subject, model_of};
+use crate::subject::{Source, Subject};
 
 /// The shift of the geometric mean.
 const SHIFT: f64 = 1_000.0;
@@ -155,16 +155,21 @@ async fn roots(desk: &Desk, subject: &Subject) -> Vec<(String, Option<f64>)> {
     let others = source.instance.stops().iter().filter(|stop| **stop != used);
     for element in std::iter::once(&used).chain(others.take(MOST_ROOTS - 1)) {
         desk.say(format!("{}: with {element} as the root", subject.letter));
-        let Some(model) = with_root(source, &name, element) else { continue };
+        let Some(model) = with_root(desk, source, &name, element).await else { continue };
         out.push((element.clone(), desk.relax(&Rc::new(model)).await.bound));
     }
     out
 }
 
-fn with_root(source: &Source, name: &str, element: &str) -> Option<model::Model> {
+async fn with_root(
+    desk: &Desk,
+    source: &Source,
+    name: &str,
+    element: &str,
+) -> Option<model::Model> {
     let mut instance = (*source.instance).clone();
     instance.set(name, Datum::Element(element.to_owned()));
-    model_of(&source.text, &instance, &source.bind, &source.states)
+    source.model_on(desk, &instance, &source.bind).await
 }
 
 #[cfg(test)]

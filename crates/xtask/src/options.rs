@@ -9,6 +9,7 @@ cargo xtask serve [--port P]               serve web/dist as it is
 cargo xtask test [--only PART]...          what CI runs; PART: native, counts, page, browser, firefox, reference
 cargo xtask counts [--write]               instructions of fixed solves against the list of them
 cargo xtask bench lp [--quick] ...         speed of the linear programs; `bench help` says more
+cargo xtask bench expand                  time and memory of two million non-zeros beside their MPS text
 cargo xtask bench tree [--quick] ...       speed of searches beside microlp and HiGHS
 cargo xtask bench wasm                     the built page's engine under Node against the native one
 

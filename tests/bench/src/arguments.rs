@@ -18,6 +18,9 @@ cargo xtask bench lp [PART]... [options]
 cargo xtask bench tree [options]
     searches: bare mode beside microlp, as a production solver would beside HiGHS
 
+cargo xtask bench expand
+    time and memory of two million non-zeros beside their MPS text
+
 cargo xtask bench wasm
     the built page's engine under Node beside the native one
 

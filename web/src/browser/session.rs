@@ -55,8 +55,9 @@ struct Inner {
     document: UseReducerDispatcher<Document>,
     lanes: BTreeMap<LaneId, LaneRun>,
     author: Option<WorkerHandle>,
+    /// The text that is to be read last, and how many readings are still to be answered.
     reading: Option<Shared<InstanceText>>,
-    wanted: Option<Shared<InstanceText>>,
+    unanswered: u32,
     checks: Checks,
     guide: Option<Shared<Vec<GuideSection>>>,
     readers: Vec<Callback<Shared<Vec<GuideSection>>>>,
@@ -78,7 +79,7 @@ impl Session {
                 lanes: BTreeMap::new(),
                 author: None,
                 reading: None,
-                wanted: None,
+                unanswered: 0,
                 checks: Checks::default(),
                 guide: None,
                 readers: Vec::new(),
@@ -91,14 +92,15 @@ impl Session {
         session
     }
 
-    /// Reads a text; of several asked for in a row, the last one counts.
+    /// Reads a text; of several asked for in a row, the last one counts: the others give way to it.
     pub(crate) fn read(&self, text: Shared<InstanceText>) {
         let mut inner = self.0.borrow_mut();
-        if inner.reading.is_some() {
-            inner.wanted = Some(text);
-        } else {
-            inner.send_reading(text);
+        if let Some(author) = &inner.author {
+            // A worker that takes no message tells so by its error event.
+            let _ = author.post(&Request::Read((*text).clone()));
         }
+        inner.unanswered += 1;
+        inner.reading = Some(text);
     }
 
     /// Checks a formulation as it is typed; of several asked for in a row in one lane, only the
@@ -482,6 +484,10 @@ impl Session {
                 for hear in waiting {
                     hear.emit(unchecked(&why));
                 }
+                // what is still asked of it is not answered
+                let mut inner = self.0.borrow_mut();
+                inner.unanswered = inner.unanswered.min(1);
+                drop(inner);
                 self.finish_reading(unreadable(format!("the reader failed: {why}")));
             }
         }
@@ -490,24 +496,14 @@ impl Session {
     fn finish_reading(&self, report: InstanceReport) {
         let (document, text) = {
             let mut inner = self.0.borrow_mut();
-            let Some(text) = inner.reading.take() else { return };
-            if let Some(wanted) = inner.wanted.take() {
-                inner.send_reading(wanted);
+            inner.unanswered = inner.unanswered.saturating_sub(1);
+            if inner.unanswered > 0 {
                 return;
             }
+            let Some(text) = inner.reading.take() else { return };
             (inner.document.clone(), text)
         };
         document.dispatch(DocumentAction::Read(text, report));
-    }
-}
-
-impl Inner {
-    fn send_reading(&mut self, text: Shared<InstanceText>) {
-        if let Some(author) = &self.author {
-            // A worker that takes no message tells so by its error event.
-            let _ = author.post(&Request::Read((*text).clone()));
-        }
-        self.reading = Some(text);
     }
 }
 

@@ -138,6 +138,11 @@ fn colour(line: &[char], kinds: &mut [Kind], report: Option<&CheckReport>) {
     });
     let mut at = 0;
     while at < end {
+        if let Some((length, kind)) = decorated(&line[at..end], report) {
+            kinds[at..at + length].fill(kind);
+            at += length;
+            continue;
+        }
         if !line[at].is_alphabetic() {
             at += 1;
             continue;
@@ -150,6 +155,52 @@ fn colour(line: &[char], kinds: &mut [Kind], report: Option<&CheckReport>) {
         }
         at += length;
     }
+}
+
+/// The length and the kind of a known name that is set in a way of its own: `\mathcal{G}`, `\bar d`,
+/// `𝒢`.
+fn decorated(line: &[char], report: Option<&CheckReport>) -> Option<(usize, Kind)> {
+    let letters = |from: usize| line[from..].iter().take_while(|c| c.is_alphabetic()).count();
+    let known = |length, name: &str| {
+        Some((length, kind(name, report))).filter(|(_, kind)| *kind != Kind::Plain)
+    };
+    if let Some(letter) = script(*line.first()?) {
+        return known(1, &format!("\\mathcal {letter}"));
+    }
+    if line[0] != '\\' {
+        return None;
+    }
+    let command: String = line[1..1 + letters(1)].iter().collect();
+    let mut at = 1 + command.chars().count();
+    at += line[at..].iter().take_while(|c| **c == ' ').count();
+    let braced = line.get(at) == Some(&'{');
+    at += usize::from(braced);
+    let length = if braced { letters(at) } else { letters(at).min(1) };
+    if length == 0 || braced && line.get(at + length) != Some(&'}') {
+        return None;
+    }
+    let inner: String = line[at..at + length].iter().collect();
+    known(at + length + usize::from(braced), &format!("\\{command} {inner}"))
+}
+
+/// The capital of which a sign is the script form (Unicode, Mathematical Alphanumeric Symbols and,
+/// for eight of them, Letterlike Symbols).
+fn script(sign: char) -> Option<char> {
+    const OLDER: [(char, char); 8] = [
+        ('ℬ', 'B'),
+        ('ℰ', 'E'),
+        ('ℱ', 'F'),
+        ('ℋ', 'H'),
+        ('ℐ', 'I'),
+        ('ℒ', 'L'),
+        ('ℳ', 'M'),
+        ('ℛ', 'R'),
+    ];
+    if let Some((_, letter)) = OLDER.iter().find(|(one, _)| *one == sign) {
+        return Some(*letter);
+    }
+    let place = u32::from(sign).checked_sub(0x1d49c).filter(|place| *place < 26)?;
+    char::from_u32(u32::from('A') + place)
 }
 
 fn kind(word: &str, report: Option<&CheckReport>) -> Kind {
@@ -227,6 +278,17 @@ mod tests {
         assert_eq!(of(Kind::Label, &found), ["(leave)"]);
         assert_eq!(of(Kind::Comment, &found), ["# x\n"]);
         assert_eq!(of(Kind::Part, &found), ["minimise\n"]);
+    }
+
+    /// Script letters had no colour, for their names hold the command that sets them.
+    #[test]
+    fn names_set_in_a_way_of_their_own_are_coloured() {
+        let mut report = report(&[]);
+        report.data = vec!["\\mathcal G".to_owned(), "\\bar d".to_owned()];
+        let text = "i ∈ \\mathcal{G}, 𝒢 ∪ \\mathcal G ∪ \\mathcal{H} ≤ \\bar d_i + \\bar e G ℋ";
+        let found = pieces(text, text, Some(&report));
+        assert_eq!(found.iter().map(|piece| piece.text.as_str()).collect::<String>(), text);
+        assert_eq!(of(Kind::Datum, &found), ["\\mathcal{G}", "𝒢", "\\mathcal G", "\\bar d"]);
     }
 
     #[test]

@@ -128,7 +128,7 @@ fn set(props: &LessonProps, heard: &Checked, caret: u32, area: &NodeRef) -> Html
     }
 }
 
-fn said(span: Span<'_>) -> Html {
+pub(crate) fn said(span: Span<'_>) -> Html {
     match span {
         Span::Words(words) => html! { { words.to_owned() } },
         Span::Code(code) => html! { <code>{ code.to_owned() }</code> },

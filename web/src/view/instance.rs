@@ -5,9 +5,11 @@ use yew::prelude::*;
 
 use crate::state::document::{Document, DocumentAction, broken_scenario};
 use crate::state::pointer::Shared;
+use crate::state::words::spans;
 use crate::view::bindings::Bindings;
 use crate::view::complaints::Complaints;
 use crate::view::grid::Grid;
+use crate::view::guide::said;
 use crate::view::hands::{Hands, use_hands};
 use crate::view::instances::Instances;
 use crate::view::map::Map;
@@ -93,7 +95,7 @@ fn facts(document: &Document, hands: Option<&Hands>) -> Html {
         <>
             <ul class="facts" data-testid="report">
                 for fact in report.facts.iter() {
-                    <li>{ fact.clone() }</li>
+                    <li>{ for spans(fact).map(said) }</li>
                 }
             </ul>
             { parts(report, document.draft.reader.as_deref(), hands) }

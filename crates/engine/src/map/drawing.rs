@@ -1,6 +1,7 @@
 //! Ways to draw a solution, by the index sets of its variables: pairs of stops are arcs on the
 //! map, one stop is a value written at it, a whole number is a bar over time, other pairs are a
-//! grid. What fits none of these is left to the table of values.
+//! grid. Where nothing else is drawn, other single indices are a grid of one column. What fits none
+//! of these is left to the table of values.
 
 use std::collections::{BTreeMap, BTreeSet};
 
@@ -34,6 +35,7 @@ enum Way {
     Stops(VariableId, Option<FamilyId>),
     Bars(Vec<VariableId>, Vec<i64>),
     Grid(VariableId, Vec<LabelId>, Vec<LabelId>),
+    Column(VariableId, Vec<LabelId>),
 }
 
 impl Drawings {
@@ -62,6 +64,9 @@ impl Drawings {
         }
         if !over_time.is_empty() && periods.len() <= PERIODS {
             ways.push((2, Way::Bars(over_time, periods.into_iter().collect())));
+        }
+        if ways.is_empty() {
+            ways.extend(column(model).map(|way| (rank(model, &way), way)));
         }
         ways.sort_by_key(|(rank, _)| *rank);
         drawings.ways = ways.into_iter().map(|(_, way)| way).collect();
@@ -143,6 +148,18 @@ impl Drawings {
                 name: format!("{} as a grid", name(id)),
                 picture: cells(model, *id, (rows, columns), x),
             },
+            Way::Column(id, rows) => Drawing {
+                name: format!("{} as a column", name(id)),
+                picture: Picture::Grid {
+                    cells: (0..)
+                        .zip(values(model, *id, x))
+                        .map(|(k, (_, v))| (k, 0, v))
+                        .filter(|cell| cell.2.abs() > ZERO)
+                        .collect(),
+                    rows: names(model, rows),
+                    columns: vec![name(id)],
+                },
+            },
         }
     }
 
@@ -184,6 +201,7 @@ fn rank(model: &Model, way: &Way) -> u8 {
         Way::Stops(..) => 3,
         Way::Bars(..) => 2,
         Way::Grid(..) => 4,
+        Way::Column(..) => 5,
     }
 }
 
@@ -211,6 +229,25 @@ fn grid(id: VariableId, tuples: &[&[LabelId]]) -> Option<Way> {
     (rows.len() * columns.len() <= CELLS).then_some(Way::Grid(id, rows, columns))
 }
 
+/// The first variable over one index, in the order of its columns.
+fn column(model: &Model) -> Option<Way> {
+    let variables = model.variables().iter().enumerate();
+    let mut over_one = variables.filter_map(|(index, variable)| {
+        let labels = variable.columns.clone().map(|c| match model.column_tuple(ColumnId(c)) {
+            [label] => Some(*label),
+            _ => None,
+        });
+        let labels = labels.collect::<Option<Vec<_>>>()?;
+        let fits = !labels.is_empty() && labels.len() <= CELLS;
+        fits.then(|| Way::Column(VariableId::from_index(index), labels))
+    });
+    over_one.next()
+}
+
+fn names(model: &Model, labels: &[LabelId]) -> Vec<String> {
+    labels.iter().map(|&label| model.labels().name(label).to_owned()).collect()
+}
+
 fn cells(
     model: &Model,
     id: VariableId,
@@ -226,10 +263,11 @@ fn cells(
         let [from, to] = model.column_tuple(column) else { return None };
         Some((*row_of.get(from)?, *column_of.get(to)?, value))
     });
-    let names = |labels: &[LabelId]| -> Vec<String> {
-        labels.iter().map(|&label| model.labels().name(label).to_owned()).collect()
-    };
-    Picture::Grid { cells: cells.collect(), rows: names(rows), columns: names(columns) }
+    Picture::Grid {
+        cells: cells.collect(),
+        rows: names(model, rows),
+        columns: names(model, columns),
+    }
 }
 
 /// The value of a variable in each period.

@@ -15,6 +15,7 @@ use crate::complaint::{Complaints, excerpt, grouped, plural};
 use crate::instance::{Datum, Instance, Reader};
 use crate::matrix::{Row, is_title};
 use crate::number::{Number, parse};
+use crate::pace::Pace;
 use crate::square::Square;
 use crate::text::{Line, lines};
 use crate::{MAX_STOPS, facts};
@@ -66,13 +67,14 @@ struct List {
 }
 
 /// Reads a list of drives. O(length · log + n²).
-pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<String>)> {
+pub(crate) async fn read(text: &str, sink: &mut Complaints<'_>) -> Option<(Instance, Vec<String>)> {
     let (mut list, kept) = head(text);
     let style = style(&kept);
-    let mut rows: Vec<Row> = kept
-        .iter()
-        .map(|line| Row { cells: split(line, style.separator), end: line.end() })
-        .collect();
+    let mut rows = Vec::with_capacity(kept.len());
+    for line in &kept {
+        rows.push(Row { cells: split(line, style.separator), end: line.end() });
+        sink.spend(rows[rows.len() - 1].cells.len()).await;
+    }
     for row in &mut rows {
         while row.cells.len() > 2 && row.cells.last().is_some_and(|cell| cell.text.is_empty()) {
             row.cells.pop();
@@ -87,6 +89,7 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<S
     let (mut costs, mut notes) = costs::find(&headline, &rows, style, sink);
     list.values = vec![Vec::new(); costs.columns.len()];
     for row in &rows {
+        sink.spend(4 * row.cells.len()).await;
         list.drive(row, &costs, style, sink);
         if list.labels.len() > MAX_STOPS {
             let message = format!("there are more than {} stops", grouped(MAX_STOPS));
@@ -101,7 +104,7 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<S
         let message = "no pair is driven both ways: each line was taken for one direction only";
         sink.warn(first, "one-way", message, BOTH_MEND);
     }
-    let (instance, sentences) = list.finish(&mut costs);
+    let (instance, sentences) = list.finish(&mut costs, &sink.pace()).await;
     notes.extend(sentences);
     notes.push(format!(
         "Read as a list of drives, cells separated by {}; every line was read.",
@@ -204,7 +207,7 @@ impl List {
     }
 
     /// The instance and what is said of it.
-    fn finish(mut self, costs: &mut Costs) -> (Instance, Vec<String>) {
+    async fn finish(mut self, costs: &mut Costs, pace: &Pace) -> (Instance, Vec<String>) {
         if self.both == Some(true) {
             let back: Vec<_> = self.order.iter().map(|&(i, j)| (j, i)).collect();
             self.order.extend(back);
@@ -218,7 +221,8 @@ impl List {
             let value = self.values.get(main).map_or(Some(Number::ONE), |v| v.get(drive).cloned());
             square.put(i, j, value);
         }
-        let mut sentences = facts::of_list(&square, &costs.unit, !self.values.is_empty());
+        let mut sentences =
+            facts::of_list(&square, &costs.unit, !self.values.is_empty(), pace).await;
         if self.both == Some(true) {
             sentences.push("Each line was taken for both directions.".to_owned());
         }
@@ -229,6 +233,7 @@ impl List {
         let rows = self.order.iter().map(|&(i, j)| self.pair(i, j)).collect();
         instance.set("A", Datum::Tuples { arity: 2, rows });
         for (column, values) in costs.columns.iter().zip(&self.values) {
+            pace.spend(8 * values.len()).await;
             let cells = self.order.iter().zip(values);
             let cells = cells.map(|(&(i, j), value)| (self.pair(i, j), value.clone())).collect();
             instance.set(&column.name, Datum::Table { arity: 2, cells });

@@ -83,7 +83,7 @@ fn begin<'s, 'a>(sink: &'s mut Complaints<'a>) -> Graph<'s, 'a> {
 }
 
 /// Reads `p edge n m` and lines `e i j`; `c` begins a remark. O(length · log).
-pub(super) fn dimacs<'a>(
+pub(super) async fn dimacs<'a>(
     text: &'a str,
     sink: &mut Complaints<'a>,
 ) -> Option<(Instance, Vec<String>)> {
@@ -92,6 +92,7 @@ pub(super) fn dimacs<'a>(
     let mut said = None;
     for line in lines(text) {
         let cells = split(&line, Separator::Space);
+        graph.sink.spend(2 * cells.len()).await;
         match cells.first().map_or("", |cell| &*cell.text) {
             "" | "n" | "x" | "d" | "v" => {}
             "c" => {
@@ -113,15 +114,17 @@ pub(super) fn dimacs<'a>(
         }
     }
     if graph.n == 0 && graph.sink.errors() == 0 {
-        graph.error(
-            0..0,
-            "there is no line `p edge`".to_owned(),
-            "Begin with `p edge`, the number of vertices and of edges.",
-        );
+        let mend = "Begin with `p edge`, the number of vertices and of edges.";
+        graph.error(0..0, "there is no line `p edge`".to_owned(), mend);
     }
     if graph.sink.errors() > 0 {
         return None;
     }
+    Some(colouring(graph, title, said))
+}
+
+/// The instance of a graph to be coloured, of which a line says how many edges it has.
+fn colouring(graph: Graph<'_, '_>, title: String, said: Option<usize>) -> (Instance, Vec<String>) {
     let (n, edges) = (graph.n, graph.rows.len());
     let mut facts =
         vec![format!("{}, {}.", plural(n, "vertex", "vertices"), plural(edges, "edge", "edges"))];
@@ -145,7 +148,7 @@ pub(super) fn dimacs<'a>(
     instance.set("h", Datum::Number(colours.into()));
     instance.set("V", Datum::Labels(counted(n)));
     instance.set("E", Datum::Tuples { arity: 2, rows: graph.rows });
-    Some((instance, facts))
+    (instance, facts)
 }
 
 /// How many colours are used where each vertex, those of most edges first, takes the first that
@@ -178,7 +181,7 @@ struct Steiner {
 }
 
 /// Reads sections Comment, Graph, Terminals and Coordinates; others are passed over.
-pub(super) fn steiner<'a>(
+pub(super) async fn steiner<'a>(
     text: &'a str,
     sink: &mut Complaints<'a>,
 ) -> Option<(Instance, Vec<String>)> {
@@ -187,6 +190,7 @@ pub(super) fn steiner<'a>(
     let mut section = String::new();
     for line in lines(text) {
         let cells = split(&line, Separator::Space);
+        graph.sink.spend(2 * cells.len()).await;
         let word = |at: usize| cells.get(at).map_or(String::new(), |cell| cell.text.to_lowercase());
         match (section.as_str(), word(0).as_str()) {
             (_, "" | "33d32945") => {}

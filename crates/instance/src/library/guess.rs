@@ -2,13 +2,14 @@
 
 use crate::complaint::Complaints;
 use crate::instance::Reader;
+use crate::pace::Pace;
 use crate::text::lines;
 
 use super::scheduling::jobs;
 use super::stream::{Stream, is_prose};
 
 /// The reader whose counts add up exactly, or whose keywords are there. O(length).
-pub(crate) fn guess(text: &str) -> Option<Reader> {
+pub(crate) async fn guess(text: &str, pace: &Pace) -> Option<Reader> {
     let all = lines(text);
     let mut filled = all.iter().filter(|line| !line.is_blank());
     let begins = |line: &str, words: &[&str]| {
@@ -28,16 +29,16 @@ pub(crate) fn guess(text: &str) -> Option<Reader> {
     {
         return Some(Reader::Graph);
     }
-    let mut words = all
-        .iter()
-        .filter(|line| !line.text.starts_with(|c: char| c.is_alphabetic() || c == '#' || c == '+'))
-        .flat_map(|line| line.text.split_whitespace());
-    if words.any(|word| !is_number(word)) {
-        return None;
+    let marked = |c: char| c.is_alphabetic() || c == '#' || c == '+';
+    for line in all.iter().filter(|line| !line.text.starts_with(marked)) {
+        pace.spend(line.text.len()).await;
+        if line.text.split_whitespace().any(|word| !is_number(word)) {
+            return None;
+        }
     }
-    let mut unheard = Complaints::new("");
+    let mut unheard = Complaints::new("", pace);
     let prose = first.trim_start().starts_with(['#', '+']) || begins(first, &["instance"]);
-    let stream = Stream::new(text, prose, &mut unheard);
+    let stream = Stream::new(text, prose, &mut unheard).await;
     if stream.cells.iter().any(|cell| !is_number(&cell.text)) {
         return None;
     }

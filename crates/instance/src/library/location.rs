@@ -15,7 +15,7 @@ use crate::MAX_STOPS;
 
 /// `m n`, capacity and cost of opening of each site, then the demand of each client and what it
 /// costs to serve all of it from each site.
-pub(super) fn sites(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
+pub(super) async fn sites(stream: &mut Stream<'_, '_>) -> Option<(Instance, Vec<String>)> {
     let m = stream.count("sites")?;
     let n = stream.count("clients")?;
     let (mut capacities, mut opening) = (Vec::new(), Vec::new());
@@ -25,9 +25,10 @@ pub(super) fn sites(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
     }
     let mut demands = Vec::new();
     let wanted = super::packing::cells(m.saturating_add(1), n);
-    let served = stream.numbers(wanted, "demands and the costs of serving them")?;
+    let served = stream.numbers(wanted, "demands and the costs of serving them").await?;
     let mut costs = vec![Number::ZERO; wanted - n];
     for (client, row) in served.chunks_exact(m + 1).enumerate() {
+        stream.spend(row.len()).await;
         demands.push(row[0].clone());
         for (site, cost) in row[1..].iter().enumerate() {
             costs[site * n + client] = cost.clone();
@@ -66,7 +67,7 @@ fn capacity(stream: &mut Stream) -> Option<Number> {
 
 /// `n m p` and the edges of a graph with their lengths; of an edge that is listed again the last
 /// length counts, as the library says.
-pub(super) fn medians(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
+pub(super) async fn medians(stream: &mut Stream<'_, '_>) -> Option<(Instance, Vec<String>)> {
     let n = stream.whole("the number of vertices", 1, MAX_STOPS)?;
     let m = stream.count("edges")?;
     let p = stream.whole("the number of medians", 1, n)?;
@@ -74,6 +75,7 @@ pub(super) fn medians(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
     for _ in 0..m {
         let (i, j) = (stream.whole("a vertex", 1, n)?, stream.whole("a vertex", 1, n)?);
         let length = stream.number("the length of an edge")?;
+        stream.spend(3).await;
         if length < Number::ZERO {
             let span = stream.last();
             let mend = "Give a length of 0 or more.".to_owned();
@@ -84,7 +86,8 @@ pub(super) fn medians(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
         again += usize::from(old.is_some());
     }
     stream.finish()?;
-    let found = if n.saturating_mul(m) > MOST_STEPS { None } else { distances(n, &edges) };
+    let found =
+        if n.saturating_mul(m) > MOST_STEPS { None } else { distances(n, &edges, stream).await };
     let Some((table, apart)) = found else {
         let message = "the graph is too large for its shortest paths, or its lengths are too long";
         let mend = "Keep to 1,000 vertices, 60,000 edges and lengths of 12 digits.".to_owned();
@@ -142,7 +145,11 @@ fn scaled(edges: &BTreeMap<(usize, usize), Number>) -> Option<(Vec<Edge>, Number
 
 /// Lengths of shortest paths between all vertices, by Dijkstra's method (Numerische Mathematik 1,
 /// 1959) from each; and how many pairs have none.
-fn distances(n: usize, edges: &BTreeMap<(usize, usize), Number>) -> Option<(Datum, usize)> {
+async fn distances(
+    n: usize,
+    edges: &BTreeMap<(usize, usize), Number>,
+    stream: &Stream<'_, '_>,
+) -> Option<(Datum, usize)> {
     let (lengths, parts) = scaled(edges)?;
     let mut near: Vec<Vec<(usize, i64)>> = vec![Vec::new(); n];
     for (i, j, length) in lengths {
@@ -151,6 +158,7 @@ fn distances(n: usize, edges: &BTreeMap<(usize, usize), Number>) -> Option<(Datu
     }
     let (mut all, mut apart) = (Vec::with_capacity(n * n), 0);
     for from in 0..n {
+        stream.spend(n + edges.len()).await;
         for length in search(from, &near) {
             apart += usize::from(length.is_none());
             all.push(length.map(|length| Number::from(length) / &parts));

@@ -49,28 +49,28 @@ pub(crate) struct Found {
 
 /// Reads a file of a library; of several instances the one of that number, from 1. O(length), but
 /// for `medians`, which finds shortest paths in O(n · m · log n).
-pub(crate) fn read<'a>(
+pub(crate) async fn read<'a>(
     text: &'a str,
     reader: Reader,
     part: Option<usize>,
     sink: &mut Complaints<'a>,
 ) -> Option<Found> {
     match reader {
-        Reader::Graph => return graph::dimacs(text, sink).map(alone),
-        Reader::Steiner => return graph::steiner(text, sink).map(alone),
+        Reader::Graph => return graph::dimacs(text, sink).await.map(alone),
+        Reader::Steiner => return graph::steiner(text, sink).await.map(alone),
         _ => {}
     }
-    let mut stream = Stream::new(text, reader == Reader::JobShop, sink);
+    let mut stream = Stream::new(text, reader == Reader::JobShop, sink).await;
     match reader {
-        Reader::Medians => location::medians(&mut stream).map(alone),
-        Reader::Sites => location::sites(&mut stream).map(alone),
-        Reader::Quadratic => quadratic::read(&mut stream).map(alone),
-        Reader::Routing => routing::read(&mut stream).map(alone),
-        Reader::Knapsack => packing::knapsack(&mut stream).map(alone),
-        Reader::MultiKnapsack => Parts::counted(&mut stream, part, packing::multi),
-        Reader::Assignment => Parts::counted(&mut stream, part, packing::assignment),
-        Reader::Tardiness => scheduling::tardiness(&mut stream, part),
-        _ => Parts::all(&mut stream, part, scheduling::job_shop),
+        Reader::Medians => location::medians(&mut stream).await.map(alone),
+        Reader::Sites => location::sites(&mut stream).await.map(alone),
+        Reader::Quadratic => quadratic::read(&mut stream).await.map(alone),
+        Reader::Routing => routing::read(&mut stream).await.map(alone),
+        Reader::Knapsack => packing::knapsack(&mut stream).await.map(alone),
+        Reader::MultiKnapsack => Parts::counted(&mut stream, part, packing::multi).await,
+        Reader::Assignment => Parts::counted(&mut stream, part, packing::assignment).await,
+        Reader::Tardiness => scheduling::tardiness(&mut stream, part).await,
+        _ => Parts::all(&mut stream, part, scheduling::job_shop).await,
     }
 }
 

@@ -9,7 +9,7 @@ use super::stream::{MOST_CELLS, Stream};
 use super::{counted, instance, matrix, vector};
 
 /// `n b` and a pair for each item, or `n`, triples with a number before each, and `b` at the end.
-pub(super) fn knapsack(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
+pub(super) async fn knapsack(stream: &mut Stream<'_, '_>) -> Option<(Instance, Vec<String>)> {
     let n = stream.count("items")?;
     let number = |k: usize| stream.cells.get(1 + 3 * k).and_then(|cell| cell.text.parse().ok());
     let numbered = stream.cells.len() == 3 * n + 2 && (0..n).all(|k| number(k) == Some(k + 1));
@@ -41,13 +41,13 @@ pub(super) fn knapsack(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
 }
 
 /// `n m optimum`, profits, a row of weights for each resource, capacities.
-pub(super) fn multi(stream: &mut Stream) -> Option<Part> {
+pub(super) async fn multi(stream: &mut Stream<'_, '_>) -> Option<Part> {
     let n = stream.count("items")?;
     let m = stream.count("resources")?;
     let best = stream.number("the value of the optimum, or 0")?;
-    let p = stream.numbers(n, "the profits")?;
-    let a = stream.numbers(cells(m, n), "the weights")?;
-    let b = stream.numbers(m, "the capacities")?;
+    let p = stream.numbers(n, "the profits").await?;
+    let a = stream.numbers(cells(m, n), "the weights").await?;
+    let b = stream.numbers(m, "the capacities").await?;
     let size = format!("{}, {}", plural(n, "item", "items"), plural(m, "resource", "resources"));
     let mut facts = vec![format!("{size}; the profits p are to be maximised.")];
     if !best.is_zero() {
@@ -64,12 +64,12 @@ pub(super) fn multi(stream: &mut Stream) -> Option<Part> {
 }
 
 /// `m n`, a row of costs for each agent, a row of needs for each agent, capacities.
-pub(super) fn assignment(stream: &mut Stream) -> Option<Part> {
+pub(super) async fn assignment(stream: &mut Stream<'_, '_>) -> Option<Part> {
     let m = stream.count("agents")?;
     let n = stream.count("jobs")?;
-    let c = stream.numbers(cells(m, n), "the costs")?;
-    let a = stream.numbers(cells(m, n), "what jobs take of agents")?;
-    let b = stream.numbers(m, "the capacities")?;
+    let c = stream.numbers(cells(m, n), "the costs").await?;
+    let a = stream.numbers(cells(m, n), "what jobs take of agents").await?;
+    let b = stream.numbers(m, "the capacities").await?;
     let size = format!("{}, {}", plural(m, "agent", "agents"), plural(n, "job", "jobs"));
     let facts = vec![
         format!("{size}; agent i gives a of its capacity b to job j at c."),

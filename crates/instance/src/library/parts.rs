@@ -25,29 +25,29 @@ impl Parts {
     }
 
     /// A file that begins with the number of its instances.
-    pub(super) fn counted(
-        stream: &mut Stream,
+    pub(super) async fn counted(
+        stream: &mut Stream<'_, '_>,
         part: Option<usize>,
-        read: impl Fn(&mut Stream) -> Option<Part>,
+        read: impl AsyncFn(&mut Stream<'_, '_>) -> Option<Part>,
     ) -> Option<Found> {
         let count = stream.whole("the number of instances", 1, MOST_PARTS)?;
         let mut parts = Self::new(part);
         for _ in 0..count {
-            parts.add(read(stream)?);
+            parts.add(read(stream).await?);
         }
         stream.finish()?;
         parts.finish(stream)
     }
 
     /// A file of one instance after the other.
-    pub(super) fn all(
-        stream: &mut Stream,
+    pub(super) async fn all(
+        stream: &mut Stream<'_, '_>,
         part: Option<usize>,
-        read: impl Fn(&mut Stream) -> Option<Part>,
+        read: impl AsyncFn(&mut Stream<'_, '_>) -> Option<Part>,
     ) -> Option<Found> {
         let mut parts = Self::new(part);
         while parts.words.is_empty() || stream.left() > 0 && parts.words.len() < MOST_PARTS {
-            parts.add(read(stream)?);
+            parts.add(read(stream).await?);
         }
         stream.finish()?;
         parts.finish(stream)

@@ -7,10 +7,10 @@ use super::stream::Stream;
 use super::{counted, instance, matrix};
 
 /// Reads the two matrices, the first as flows. Which is which does not matter for the optimum.
-pub(super) fn read(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
+pub(super) async fn read(stream: &mut Stream<'_, '_>) -> Option<(Instance, Vec<String>)> {
     let n = stream.whole("the number of facilities", 1, crate::MAX_STOPS)?;
-    let flows = stream.numbers(n * n, "the first matrix")?;
-    let distances = stream.numbers(n * n, "the second matrix")?;
+    let flows = stream.numbers(n * n, "the first matrix").await?;
+    let distances = stream.numbers(n * n, "the second matrix").await?;
     stream.finish()?;
     let facts = vec![
         format!("{} for as many locations.", plural(n, "facility", "facilities")),

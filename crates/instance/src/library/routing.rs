@@ -11,7 +11,7 @@ use crate::square::{Square, counted};
 use super::stream::Stream;
 
 /// Reads the file; the depot comes first. Distances are Euclidean, rounded to the nearest.
-pub(super) fn read(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
+pub(super) async fn read(stream: &mut Stream<'_, '_>) -> Option<(Instance, Vec<String>)> {
     let n = stream.whole("the number of stops", 2, MAX_STOPS)?;
     let vehicles = stream.count("vehicles")?;
     let capacity = stream.number("the capacity")?;
@@ -25,8 +25,10 @@ pub(super) fn read(stream: &mut Stream) -> Option<(Instance, Vec<String>)> {
     let labels = counted(n);
     let total = total_text(&demands);
     let rule = crate::tsplib::Rule::Euclidean;
-    let square = Square::of(labels.clone(), |i, j| rule.between(places[i], places[j]).into());
-    let mut instance = Instance::round_trip(labels.clone(), &square.cells);
+    let between = |i: usize, j: usize| rule.between(places[i], places[j]).into();
+    let pace = stream.pace();
+    let square = Square::of(labels.clone(), between, &pace).await;
+    let mut instance = Instance::round_trip_in_slices(labels.clone(), &square.cells, &pace).await;
     instance.reader = Reader::Routing;
     instance.points = Some(Points { places, geographic: false });
     let cells: BTreeMap<_, _> = labels.into_iter().map(|label| vec![label]).zip(demands).collect();

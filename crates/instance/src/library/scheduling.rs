@@ -12,11 +12,11 @@ use super::{Found, counted, instance, matrix, vector};
 
 /// `n m`, and for each job its operations in order, each as machine and duration. Machines are
 /// counted from 0, or from 1 where none is 0; here they are counted from 1.
-pub(super) fn job_shop(stream: &mut Stream) -> Option<Part> {
+pub(super) async fn job_shop(stream: &mut Stream<'_, '_>) -> Option<Part> {
     let begins = stream.at();
     let n = stream.count("jobs")?;
     let m = stream.count("machines")?;
-    let all = stream.numbers(super::packing::cells(n, 2 * m), "the operations")?;
+    let all = stream.numbers(super::packing::cells(n, 2 * m), "the operations").await?;
     let (machines, durations): (Vec<Number>, Vec<Number>) =
         all.chunks_exact(2).map(|pair| (pair[0].clone(), pair[1].clone())).unzip();
     let from_zero = machines.iter().any(Number::is_zero);
@@ -53,10 +53,8 @@ pub(super) fn job_shop(stream: &mut Stream) -> Option<Part> {
         facts.push("The file counts machines from 0; here they are counted from 1.".to_owned());
     }
     if odd > 0 {
-        facts.push(format!(
-            "{} visit every machine once.",
-            plural(odd, "job does not", "jobs do not")
-        ));
+        let jobs = plural(odd, "job does not", "jobs do not");
+        facts.push(format!("{jobs} visit every machine once."));
     }
     let mut data = vec![("J", counted(n)), ("M", counted(m))];
     if odd == 0 {
@@ -147,7 +145,7 @@ fn load(machines: &[Number], durations: &[Number], m: usize) -> Vec<Number> {
 
 /// Durations, weights and due dates of one instance after the other. The file does not say how
 /// many jobs there are, unless it begins with their number.
-pub(super) fn tardiness(stream: &mut Stream, part: Option<usize>) -> Option<Found> {
+pub(super) async fn tardiness(stream: &mut Stream<'_, '_>, part: Option<usize>) -> Option<Found> {
     let given = given(stream);
     let Some(n) = given.or_else(|| jobs(stream)) else {
         let message = "the file does not say how many jobs an instance has".to_owned();
@@ -160,9 +158,9 @@ pub(super) fn tardiness(stream: &mut Stream, part: Option<usize>) -> Option<Foun
     }
     let mut parts = Parts::new(part);
     for _ in 0..(stream.left() / (3 * n)).min(super::parts::MOST_PARTS) {
-        let p = stream.numbers(n, "the durations")?;
-        let w = stream.numbers(n, "the weights")?;
-        let d = stream.numbers(n, "the due dates")?;
+        let p = stream.numbers(n, "the durations").await?;
+        let w = stream.numbers(n, "the weights").await?;
+        let d = stream.numbers(n, "the due dates").await?;
         let work = total_text(&p);
         let size = format!("{}, {work} of work", plural(n, "job", "jobs"));
         let mut facts = vec![format!("{size}, with weights w and due dates d.")];

@@ -6,6 +6,7 @@ use std::ops::Range;
 use crate::cells::Cell;
 use crate::complaint::{Complaints, excerpt, grouped};
 use crate::number::{Number, parse};
+use crate::pace::Pace;
 use crate::text::lines;
 
 /// No set of such a file is larger.
@@ -32,7 +33,7 @@ pub(super) struct Stream<'s, 'a> {
 impl<'s, 'a> Stream<'s, 'a> {
     /// The words of a text, remarks left out; where `prose`, lines that begin with a letter too,
     /// of which `instance NAME` names what follows.
-    pub(super) fn new(text: &'a str, prose: bool, sink: &'s mut Complaints<'a>) -> Self {
+    pub(super) async fn new(text: &'a str, prose: bool, sink: &'s mut Complaints<'a>) -> Self {
         let (mut cells, mut names) = (Vec::new(), Vec::new());
         for line in lines(text) {
             if is_prose(line.text, prose) {
@@ -43,12 +44,24 @@ impl<'s, 'a> Stream<'s, 'a> {
                 continue;
             }
             let base = line.text.as_ptr().addr();
+            let known = cells.len();
             cells.extend(line.text.split_whitespace().map(|word| {
                 let start = line.start + (word.as_ptr().addr() - base);
                 Cell { text: Cow::Borrowed(word), span: start..start + word.len() }
             }));
+            sink.spend(cells.len() - known).await;
         }
         Self { cells, at: 0, end: text.trim_end().len(), names, sink }
+    }
+
+    /// The pace of the reading.
+    pub(super) fn pace(&self) -> Pace {
+        self.sink.pace()
+    }
+
+    /// Counts cells that were read.
+    pub(super) async fn spend(&self, cells: usize) {
+        self.sink.spend(cells).await;
     }
 
     pub(super) fn left(&self) -> usize {
@@ -102,7 +115,7 @@ impl<'s, 'a> Stream<'s, 'a> {
     }
 
     /// `count` numbers, all that can be read of them being read.
-    pub(super) fn numbers(&mut self, count: usize, what: &str) -> Option<Vec<Number>> {
+    pub(super) async fn numbers(&mut self, count: usize, what: &str) -> Option<Vec<Number>> {
         if self.left() < count || count > MOST_CELLS {
             let (end, left) = (self.end, grouped(self.left()));
             let count = grouped(count);
@@ -111,7 +124,11 @@ impl<'s, 'a> Stream<'s, 'a> {
             self.error(end..end, "text-ends", [message, mend]);
             return None;
         }
-        let found: Vec<Number> = (0..count).filter_map(|_| self.number(what)).collect();
+        let mut found = Vec::with_capacity(count);
+        for _ in 0..count {
+            self.spend(1).await;
+            found.extend(self.number(what));
+        }
         (found.len() == count).then_some(found)
     }
 

@@ -39,7 +39,7 @@ const LABEL_MEND: &str = "Write a number or a dash. If it belongs to a label wit
     label in double quotes, or put tabs between the cells.";
 
 /// Splits a text into a table. A first line of words that a blank line follows is its title.
-pub(crate) fn table<'a>(text: &'a str, sink: &mut Complaints) -> Option<Table<'a>> {
+pub(crate) async fn table<'a>(text: &'a str, sink: &mut Complaints<'_>) -> Option<Table<'a>> {
     let all = lines(text);
     let mut kept: Vec<Line> = Vec::new();
     let mut title = String::new();
@@ -65,10 +65,11 @@ pub(crate) fn table<'a>(text: &'a str, sink: &mut Complaints) -> Option<Table<'a
         return None;
     }
     let style = style(&kept);
-    let rows = kept
-        .iter()
-        .map(|line| Row { cells: split(line, style.separator), end: line.end() })
-        .collect();
+    let mut rows = Vec::with_capacity(kept.len());
+    for line in &kept {
+        rows.push(Row { cells: split(line, style.separator), end: line.end() });
+        sink.spend(rows[rows.len() - 1].cells.len()).await;
+    }
     Some(Table { title, style, rows })
 }
 
@@ -79,8 +80,8 @@ pub(crate) fn is_title(rest: &[Line]) -> bool {
 }
 
 /// Reads a distance matrix. O(n²).
-pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
-    let Table { title, style, mut rows } = table(text, sink)?;
+pub(crate) async fn read(text: &str, sink: &mut Complaints<'_>) -> Option<RoundTrip> {
+    let Table { title, style, mut rows } = table(text, sink).await?;
     if let Some(row) = rows.iter().find(|row| row.cells.len() >= MAX_CELLS) {
         let message = format!("a row with more than {} cells", grouped(MAX_STOPS));
         let mend = format!("Keep to {} stops.", grouped(MAX_STOPS));
@@ -95,12 +96,13 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
     }
     let headings = labels::take(&mut rows, style);
     drop_trailing(&mut rows, style);
-    let values: Vec<Vec<Value>> = rows
-        .iter()
-        .map(|row| row.cells.iter().map(|cell| value(cell, style, sink)).collect())
-        .collect();
+    let mut values: Vec<Vec<Value>> = Vec::with_capacity(rows.len());
+    for row in &rows {
+        sink.spend(2 * row.cells.len()).await;
+        values.push(row.cells.iter().map(|cell| value(cell, style, sink)).collect());
+    }
     let shape = shape::find(&values, headings.columns.as_ref().map(Vec::len));
-    let (square, mirrored) = place::square(&rows, values, &shape, &headings, sink)?;
+    let (square, mirrored) = place::square(&rows, values, &shape, &headings, sink).await?;
     let mut notes = Vec::new();
     let unit = headings.unit(&title, &mut notes);
     notes.extend(shape.note());

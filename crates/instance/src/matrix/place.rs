@@ -13,12 +13,12 @@ use super::shape::Shape;
 use super::{Row, Value, row_name};
 
 /// The square and whether a blank half was filled from the other; or complaints. O(n²).
-pub(crate) fn square(
-    rows: &[Row],
+pub(crate) async fn square(
+    rows: &[Row<'_>],
     values: Vec<Vec<Value>>,
     shape: &Shape,
-    headings: &Headings,
-    sink: &mut Complaints,
+    headings: &Headings<'_>,
+    sink: &mut Complaints<'_>,
 ) -> Option<(Square, bool)> {
     check_rows(rows, shape, sink);
     if shape.n < 2 {
@@ -34,6 +34,7 @@ pub(crate) fn square(
     let mut square = Square::empty(labels);
     for (number, row) in values.into_iter().enumerate() {
         let i = shape.stop(number);
+        sink.spend(row.len()).await;
         for (place, value) in row.into_iter().enumerate() {
             let column = shape.column(number, place);
             let j = order.get(column).copied().unwrap_or(column);

@@ -10,6 +10,7 @@ use crate::cells::{Cell, is_blank};
 use crate::complaint::{Complaints, excerpt, plural};
 use crate::instance::Datum;
 use crate::matrix::Row;
+use crate::pace::Pace;
 
 use super::MAX_ENTRIES;
 use super::draft::{Cells, Draft, said, whole};
@@ -21,7 +22,7 @@ const MAX_INDICES: usize = 8;
 const MAX_WHOLE: usize = 4;
 
 /// Reads a long table.
-pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) {
+pub(super) async fn read(section: &Section<'_>, draft: &mut Draft, sink: &mut Complaints<'_>) {
     let Some((head, body)) = section.rows.split_first() else { return };
     let width = head.cells.len();
     let rows: Vec<&Row> = body.iter().filter(|row| fits(row, width, sink)).collect();
@@ -30,7 +31,8 @@ pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) 
         sink.error(head.end..head.end, "no-rows", "the table has no rows", mend);
         return;
     }
-    let indices = indices(section, &rows, width);
+    sink.spend(width.saturating_mul(rows.len())).await;
+    let indices = indices(section, &rows, width, &sink.pace()).await;
     let values: Vec<usize> = (0..width).filter(|place| !indices.contains(place)).collect();
     let labels = rows.len().saturating_mul(indices.len()).saturating_mul(values.len());
     if indices.len() > MAX_INDICES || labels > MAX_ENTRIES {
@@ -44,6 +46,7 @@ pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) 
         draft.extend(&name, column(&rows, place).filter(|label| !is_blank(label)));
         names.push(name);
     }
+    sink.spend(rows.len()).await;
     let keys = keys(&rows, &indices, sink);
     if values.is_empty() {
         return tuples(section, (&names, &keys), draft, sink);
@@ -63,6 +66,7 @@ pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) 
         let Some(name) = draft.name(heading, sink) else { continue };
         let mut cells = Cells::new();
         for (row, key) in rows.iter().zip(&keys) {
+            sink.spend(2).await;
             if let Some(key) = key {
                 cells.put(key.clone(), &row.cells[place], section.style, sink);
             }
@@ -93,17 +97,16 @@ fn fits(row: &Row, width: usize, sink: &mut Complaints) -> bool {
 }
 
 /// The columns that are indices.
-fn indices(section: &Section, rows: &[&Row], width: usize) -> Vec<usize> {
+async fn indices(
+    section: &Section<'_>,
+    rows: &[&Row<'_>],
+    width: usize,
+    pace: &Pace,
+) -> Vec<usize> {
     let words: BTreeSet<usize> =
         (0..width).filter(|&place| place == 0 || section.is_word_column(place)).collect();
-    let told_apart = |indices: &BTreeSet<usize>| {
-        let key = |row: &&Row| {
-            indices.iter().map(|&place| row.cells[place].text.to_string()).collect::<Vec<_>>()
-        };
-        rows.iter().map(key).collect::<BTreeSet<_>>().len()
-    };
     // One row given twice is a slip; where a quarter of the rows repeat, an index is missing.
-    if words.len() > MAX_INDICES || told_apart(&words) * 4 > rows.len() * 3 {
+    if words.len() > MAX_INDICES || told_apart(rows, &words, pace).await * 4 > rows.len() * 3 {
         return words.into_iter().collect();
     }
     let is_whole = |place: &usize| column(rows, *place).all(|text| whole(text).is_some());
@@ -111,11 +114,21 @@ fn indices(section: &Section, rows: &[&Row], width: usize) -> Vec<usize> {
     for place in (0..width).filter(|place| !words.contains(place)).filter(is_whole).take(MAX_WHOLE)
     {
         indices.insert(place);
-        if indices.len() < width && told_apart(&indices) == rows.len() {
+        if indices.len() < width && told_apart(rows, &indices, pace).await == rows.len() {
             return indices.into_iter().collect();
         }
     }
     words.into_iter().collect()
+}
+
+/// How many rows some columns tell apart.
+async fn told_apart(rows: &[&Row<'_>], indices: &BTreeSet<usize>, pace: &Pace) -> usize {
+    let mut seen = BTreeSet::new();
+    for row in rows {
+        pace.spend(8 * indices.len()).await;
+        seen.insert(indices.iter().map(|&place| &*row.cells[place].text).collect::<Vec<_>>());
+    }
+    seen.len()
 }
 
 /// The index of each row; complains of what is missing or given twice.

@@ -21,6 +21,7 @@ use crate::cells::{Cell, MAX_CELLS, is_blank};
 use crate::complaint::{Complaints, excerpt, grouped};
 use crate::instance::{Datum, Instance, Reader};
 use crate::names;
+use crate::pace::Pace;
 
 use draft::Draft;
 use section::Section;
@@ -41,8 +42,8 @@ enum Kind {
 }
 
 /// Reads tables. O(length · log).
-pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<String>)> {
-    let found = sections(text);
+pub(crate) async fn read(text: &str, sink: &mut Complaints<'_>) -> Option<(Instance, Vec<String>)> {
+    let found = sections(text, &sink.pace()).await;
     let entries: usize = found.iter().flat_map(|s| &s.rows).map(|row| row.cells.len()).sum();
     let longest = found.iter().flat_map(|s| &s.rows).find(|row| row.cells.len() >= MAX_CELLS);
     if entries > MAX_ENTRIES || found.len() > MAX_TABLES || longest.is_some() {
@@ -70,25 +71,25 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<(Instance, Vec<S
     for section in &found {
         match kind(section, &known) {
             Kind::Numbers => numbers(section, &mut draft, sink),
-            Kind::Long => long::read(section, &mut draft, sink),
+            Kind::Long => long::read(section, &mut draft, sink).await,
             Kind::Wide if corner::of(section).sets.is_none() => later.push(section),
-            Kind::Wide => wide::read(section, &mut draft, sink),
+            Kind::Wide => wide::read(section, &mut draft, sink).await,
         }
     }
     for section in later {
-        wide::read(section, &mut draft, sink);
+        wide::read(section, &mut draft, sink).await;
     }
     if sink.errors() > 0 {
         return None;
     }
     let title = found.iter().find_map(|section| section.title.as_ref());
-    finish(draft, title.map(|title| title.0.as_str()), sink)
+    finish(draft, title.map(|title| title.0.as_str()), sink).await
 }
 
-fn finish(
+async fn finish(
     draft: Draft,
     title: Option<&str>,
-    sink: &mut Complaints,
+    sink: &mut Complaints<'_>,
 ) -> Option<(Instance, Vec<String>)> {
     let mut instance = Instance::new(Reader::Table);
     instance.title = title.unwrap_or("").to_owned();
@@ -106,7 +107,7 @@ fn finish(
             return None;
         }
     }
-    let mut sentences = blocks::describe_all(&mut instance, false);
+    let mut sentences = blocks::describe_all(&mut instance, false, &sink.pace()).await;
     sentences.extend(notes);
     sentences.push("Read as tables with headings; every line was read.".to_owned());
     Some((instance, sentences))
@@ -146,8 +147,8 @@ fn numbers(section: &Section, draft: &mut Draft, sink: &mut Complaints) {
 }
 
 /// Whether a text looks like tables of this kind and not like a matrix of distances.
-pub(crate) fn is_likely(text: &str) -> bool {
-    let found = sections(text);
+pub(crate) async fn is_likely(text: &str, pace: &Pace) -> bool {
+    let found = sections(text, pace).await;
     let headed = found.iter().filter(|section| is_headed(section)).count();
     headed > 1 || (found.len() == 1 || headed > 0) && found.iter().any(is_sheet)
 }

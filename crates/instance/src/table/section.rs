@@ -5,6 +5,7 @@ use std::ops::Range;
 use crate::cells::{Cell, Separator, Style, is_blank, is_word, split, style};
 use crate::matrix::Row;
 use crate::number::parse;
+use crate::pace::Pace;
 use crate::text::{Line, lines};
 
 /// One table as it was written, with the title above it.
@@ -56,12 +57,12 @@ impl Section<'_> {
 }
 
 /// The tables of a text. O(length).
-pub(crate) fn sections(text: &str) -> Vec<Section<'_>> {
+pub(crate) async fn sections<'a>(text: &'a str, pace: &Pace) -> Vec<Section<'a>> {
     let mut found: Vec<Section> = Vec::new();
     let mut title = None;
     let all: Vec<Line> = lines(text).into_iter().filter(|line| !line.is_remark()).collect();
     for chunk in all.split(is_gap).filter(|chunk| !chunk.is_empty()) {
-        let section = cells(chunk);
+        let section = cells(chunk, pace).await;
         if let ([line], false) = (chunk, section.has_number(0)) {
             title = Some(title_of(line));
             continue;
@@ -83,17 +84,18 @@ fn title_of(line: &Line) -> (String, Range<usize>) {
 
 /// Splits lines into cells; lines with digits say what separates them. Empty cells at the end
 /// that the heading lacks are dropped.
-fn cells<'a>(chunk: &[Line<'a>]) -> Section<'a> {
+async fn cells<'a>(chunk: &[Line<'a>], pace: &Pace) -> Section<'a> {
     let telling: Vec<Line> = chunk
         .iter()
         .filter(|line| line.text.contains(|c: char| c.is_ascii_digit()))
         .copied()
         .collect();
     let style = style(if telling.is_empty() { chunk } else { &telling });
-    let rows = chunk
-        .iter()
-        .map(|line| Row { cells: split(line, style.separator), end: line.end() })
-        .collect();
+    let mut rows = Vec::with_capacity(chunk.len());
+    for line in chunk {
+        pace.spend(line.text.len()).await;
+        rows.push(Row { cells: split(line, style.separator), end: line.end() });
+    }
     Section { title: None, style, rows }
 }
 

@@ -85,7 +85,7 @@ fn is_series(cells: &[Cell]) -> bool {
 }
 
 /// Reads a wide table.
-pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) {
+pub(super) async fn read(section: &Section<'_>, draft: &mut Draft, sink: &mut Complaints<'_>) {
     let Some((head, body)) = section.rows.split_first() else { return };
     let corner = corner::of(section);
     let columns = &head.cells[1..];
@@ -105,6 +105,7 @@ pub(super) fn read(section: &Section, draft: &mut Draft, sink: &mut Complaints) 
     draft.extend(&sets.1, sides.1.iter().map(String::as_str));
     let mut cells = Cells::new();
     for (row, label) in rows.iter().zip(&sides.0) {
+        sink.spend(2 * row.cells.len()).await;
         for (cell, column) in row.cells[1..].iter().zip(&sides.1) {
             cells.put(vec![label.clone(), column.clone()], cell, section.style, sink);
         }

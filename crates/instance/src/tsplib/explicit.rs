@@ -53,14 +53,19 @@ impl Format {
 }
 
 /// Reads the section. O(n²).
-pub(crate) fn square(
-    rows: &[Line],
+pub(crate) async fn square(
+    rows: &[Line<'_>],
     format: Format,
     labels: Vec<String>,
-    sink: &mut Complaints,
+    sink: &mut Complaints<'_>,
 ) -> Option<Square> {
     let n = labels.len();
-    let cells: Vec<Cell> = rows.iter().flat_map(|line| split(line, Separator::Space)).collect();
+    let mut cells: Vec<Cell> = Vec::new();
+    for line in rows {
+        let known = cells.len();
+        cells.extend(split(line, Separator::Space));
+        sink.spend(cells.len() - known).await;
+    }
     let wanted: usize = (0..n).map(|i| format.columns(i, n).len()).sum();
     let before = sink.errors();
     if cells.len() != wanted {
@@ -78,6 +83,7 @@ pub(crate) fn square(
     let mut square = Square::empty(labels);
     let mut listed = cells.iter();
     for i in 0..n {
+        sink.spend(2 * format.columns(i, n).len()).await;
         for j in format.columns(i, n) {
             let Some(cell) = listed.next() else { continue };
             let Some(value) = number(cell, false, sink) else { continue };

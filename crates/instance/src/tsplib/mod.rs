@@ -25,7 +25,7 @@ use file::File;
 pub(crate) use file::is_telling;
 
 /// Reads a TSPLIB file. O(n²).
-pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
+pub(crate) async fn read(text: &str, sink: &mut Complaints<'_>) -> Option<RoundTrip> {
     let file = File::scan(text, sink);
     check_type(&file, sink)?;
     let n = dimension(&file, sink);
@@ -34,7 +34,7 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
     let coordinates = file.section("NODE_COORD_SECTION").map(|rows| places(rows, n, sink));
     let display = file.section("DISPLAY_DATA_SECTION").map(|rows| places(rows, n, sink));
     let (square, how) = match rule {
-        None => explicit_square(&file, n, sink)?,
+        None => explicit_square(&file, n, sink).await?,
         Some(rule) => {
             let Some(nodes) = coordinates.as_ref() else {
                 let message = "the coordinates are missing";
@@ -44,7 +44,8 @@ pub(crate) fn read(text: &str, sink: &mut Complaints) -> Option<RoundTrip> {
             };
             let nodes = nodes.as_ref()?;
             let value = |i: usize, j: usize| rule.between(nodes.places[i], nodes.places[j]).into();
-            (Square::of(nodes.labels.clone(), value), rule.name().to_owned())
+            let square = Square::of(nodes.labels.clone(), value, &sink.pace()).await;
+            (square, rule.name().to_owned())
         }
     };
     let geographic = rule == Some(Rule::Geo);
@@ -125,7 +126,11 @@ fn weight_rule<'a>(file: &'a File, sink: &mut Complaints) -> Option<(Option<Rule
     Some((rule, line))
 }
 
-fn explicit_square(file: &File, n: usize, sink: &mut Complaints) -> Option<(Square, String)> {
+async fn explicit_square(
+    file: &File<'_>,
+    n: usize,
+    sink: &mut Complaints<'_>,
+) -> Option<(Square, String)> {
     let Some((value, line)) = file.keyword("EDGE_WEIGHT_FORMAT") else {
         let mend = format!("Add a line with one of: {}.", Format::names());
         sink.error(0..0, "keyword-missing", "EDGE_WEIGHT_FORMAT is missing", mend);
@@ -142,7 +147,7 @@ fn explicit_square(file: &File, n: usize, sink: &mut Complaints) -> Option<(Squa
         sink.error(line.span(), "section-missing", "the distances are missing", mend);
         return None;
     };
-    let square = explicit::square(rows, format, counted(n), sink)?;
+    let square = explicit::square(rows, format, counted(n), sink).await?;
     Some((square, format!("list ({})", format.name())))
 }
 

@@ -137,6 +137,14 @@ impl Checker<'_> {
     ) -> Option<()> {
         let mut operands: Vec<&Expression> = vec![first];
         operands.extend(links.iter().map(|(_, operand)| operand));
+        if let [(Relation::Equal, places), (Relation::In, set)] = links
+            && let Kind::Tuple(items) | Kind::Set(items) = &places.kind
+            && let Some(name) = self.new_name(first, work)
+        {
+            self.membership_step(places, set, work)?;
+            self.name_places(&name.text, items, work);
+            return Some(());
+        }
         let binds = |k: usize| match links[k].0 {
             Relation::In => self.has_new(operands[k], work),
             Relation::Subset | Relation::SubsetOrEqual => {
@@ -393,6 +401,17 @@ impl Checker<'_> {
         work.pending.retain(|(n, _)| *n != name);
         work.fenced = work.fenced.min(work.pending.len());
         self.locals.push(Local { name, what: Bound::Tuple(places) });
+    }
+
+    /// `e = {i,j}`: the whole tuple has a name beside those of its places.
+    fn name_places(&mut self, name: &str, items: &[Expression], work: &mut Quantifier<'_>) {
+        for (k, item) in items.iter().enumerate() {
+            let Kind::Name(place) = &item.kind else { return };
+            let Some(at) = self.local(&place.text) else { return };
+            let what = self.locals[at].what;
+            self.locals.push(Local { name: place_name(name, k), what });
+        }
+        self.name_tuple(Some(name.to_owned()), items.len(), work);
     }
 
     fn pattern(

@@ -3,7 +3,7 @@
 use std::collections::BTreeSet;
 
 use super::{Checker, Global, usage};
-use crate::diagnostic::{rows as message, shapes};
+use crate::diagnostic::{names, rows as message, shapes};
 use crate::plan::{Bounding, Domain, Node, Root, Variable};
 use crate::syntax::{Expression, Kind, Line, Name, Relation};
 
@@ -40,6 +40,32 @@ impl<'t> Checker<'t> {
             }
         }
         roles
+    }
+
+    /// `min z` where rows hold `z` and nothing declares it: papers leave out that such a name is
+    /// free, for the rows bound it.
+    pub(super) fn name_of_objective(&mut self) {
+        let Some(objective) = &self.tree.objective else { return };
+        let expression = &objective.expression;
+        let Kind::Name(name) = &expression.kind else { return };
+        let bare = name.indices.is_empty() && name.superscript.is_none();
+        let mut words = BTreeSet::new();
+        let rows = self.tree.statements.iter().flat_map(usage::of_line);
+        rows.for_each(|operand| usage::words(operand, &mut words));
+        let known = self.names.contains_key(&name.text)
+            || self.splits_into_known(&name.text, &BTreeSet::new());
+        if !bare || known || !words.contains(name.text.as_str()) {
+            return;
+        }
+        self.new_variable(expression);
+        let bounds = vec![Bounding::Numbers(crate::syntax::NumberSet::Real)];
+        let span = expression.span;
+        let free = Domain { steps: Vec::new(), indices: Vec::new(), bounds, span };
+        if let Some(variable) = self.variables.last_mut() {
+            variable.tuples = super::declare::whole_set(&[], &[]);
+            variable.domains.push(free);
+        }
+        let _: Option<()> = self.report(names::objective_is_free(&name.text, span));
     }
 
     fn new_variable(&mut self, operand: &Expression) {

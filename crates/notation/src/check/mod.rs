@@ -28,7 +28,7 @@ use std::rc::Rc;
 use crate::diagnostic::{Diagnostic, names as message, syntax, tidy};
 use crate::place::Span;
 use crate::plan::{Node, Plan, Root, Slot, SubsetPlan, Symbol, SymbolId, Variable, VariableNumber};
-use crate::syntax::{Expression, Formulation};
+use crate::syntax::{Expression, Formulation, plain};
 
 /// A formulation whose names and shapes are in order, as far as its diagnostics do not say
 /// otherwise.
@@ -49,20 +49,20 @@ impl Checked {
     #[must_use]
     pub fn data(&self) -> Vec<&str> {
         let data = self.plan.symbols.iter().filter(|s| s.datum);
-        data.map(|s| s.name.as_str()).collect()
+        data.map(|s| plain(&s.name)).collect()
     }
 
     /// The names of its definitions, in order.
     #[must_use]
     pub fn definitions(&self) -> Vec<&str> {
         let defined = self.plan.symbols.iter().filter(|s| !s.datum);
-        defined.map(|s| s.name.as_str()).collect()
+        defined.map(|s| plain(&s.name)).collect()
     }
 
     /// The names of its variables, in order.
     #[must_use]
     pub fn variables(&self) -> Vec<&str> {
-        self.plan.variables.iter().map(|variable| variable.name.as_str()).collect()
+        self.plan.variables.iter().map(|variable| plain(&variable.name)).collect()
     }
 
     /// The names of its constraint families, in order.
@@ -196,6 +196,7 @@ impl<'t> Checker<'t> {
     fn formulation(&mut self) -> Plan {
         let order = self.declarations();
         let domains = self.find_domains();
+        self.name_of_objective();
         self.domains(&domains);
         let families = self.families(&domains);
         let (objective, span) = self.objective();

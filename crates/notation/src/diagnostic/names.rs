@@ -98,6 +98,11 @@ pub(crate) fn inferred(index: &str, set: &str, span: Span) -> Diagnostic {
     Diagnostic::info("name.inferred", span, format!("{} is taken from {set}", short(index)))
 }
 
+pub(crate) fn objective_is_free(name: &str, span: Span) -> Diagnostic {
+    let message = format!("{} is taken for a variable that its rows bound", short(name));
+    Diagnostic::info("name.objective-free", span, message)
+}
+
 pub(crate) fn no_set(index: &str, span: Span) -> Diagnostic {
     Diagnostic::error(
         "name.no-set",

@@ -11,9 +11,10 @@ pub(crate) const PROSE: &str = "prose";
 
 /// Words with which a sentence begins.
 const OPENERS: &str = "let where we here the denote suppose assume consider given in this these \
-    there our its it note moreover furthermore finally then thus with all each to as an \
-    constraint constraints equation equations inequality inequalities objective variable variables \
-    decision binary integer continuous parameter parameters";
+    there our its it note moreover furthermore finally then thus with all each to as an writing \
+    setting putting defining using constraint constraints equation equations inequality \
+    inequalities objective variable variables decision binary integer continuous parameter \
+    parameters";
 
 /// The fewest words of a sentence, its first one among them.
 const FEWEST: usize = 4;
@@ -123,11 +124,7 @@ fn defines(tokens: &[Token], text: &str) -> bool {
 /// words, none of them set apart as a remark is.
 pub(crate) fn is_sentence(line: &str) -> bool {
     let trimmed = line.trim_start();
-    let Some(first) = trimmed.split(foreign::is_white).next() else { return false };
-    let opener = first.trim_end_matches([',', ':']).to_ascii_lowercase();
-    if opener.len() > 12 || !OPENERS.split_whitespace().any(|one| one == opener) {
-        return false;
-    }
+    let Some(first) = opens(trimmed) else { return false };
     let rest = trimmed[first.len()..].trim_start_matches(' ');
     let sign = rest.chars().next().and_then(table::sign);
     if sign.is_some_and(|kind| kind != Kind::LeftParen) || is_apart(trimmed.trim_end()) {
@@ -135,18 +132,27 @@ pub(crate) fn is_sentence(line: &str) -> bool {
     }
     let outside: String = trimmed.split('$').step_by(2).collect::<Vec<_>>().join(" ");
     let related = outside.chars().any(|c| table::sign(c).is_some_and(Kind::is_relation));
-    let named = matches!(&*opener, "let" | "where") && rest.contains(['_', '^']);
+    let named =
+        matches!(&*first.to_ascii_lowercase(), "let" | "where") && rest.contains(['_', '^']);
     let words = words_of(&outside);
     words >= FEWEST && (!related || named || words >= 6)
 }
 
+/// The first word of a line, where sentences begin with it.
+fn opens(line: &str) -> Option<&str> {
+    let first = line.trim_start().split(foreign::is_white).next()?;
+    let opener = first.trim_end_matches([',', ':']).to_ascii_lowercase();
+    let known = opener.len() <= 12 && OPENERS.split_whitespace().any(|one| one == opener);
+    known.then_some(first)
+}
+
 /// Whether a line begins with a heading, as in `\\textbf{Variables.} $x_i = 1$ if …`, alone or
-/// before words.
+/// before words; and behind one a shorter sentence: `\\textbf{Model 1.} With $M = 9$,`.
 fn is_headed(line: &str) -> bool {
     let Some((rest, named)) = behind_heading(line) else { return false };
     let outside: String = rest.split('$').step_by(2).collect::<Vec<_>>().join(" ");
     let related = outside.chars().any(|c| table::sign(c).is_some_and(Kind::is_relation));
-    let alone = named && rest.trim().is_empty();
+    let alone = named && (rest.trim().is_empty() || opens(rest).is_some());
     alone || is_sentence(rest) || words_of(&outside) >= FEWEST && !related
 }
 

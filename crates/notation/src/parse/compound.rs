@@ -29,7 +29,10 @@ impl Parser<'_> {
             let next = before.get(i + 1).map(|t| t.kind);
             t.kind == T::Word && t.text == text && next != Some(T::Underscore)
         };
-        let seen = before.iter().enumerate().any(bare);
+        // nor is what the statement at hand is about: `x = Σ_k B_k λ_k, x ≥ D`
+        let own = before.first().is_some_and(|t| t.text == text)
+            && self.tokens.get(self.first + 1).is_some_and(|t| t.kind.is_relation());
+        let seen = !own && before.iter().enumerate().any(bare);
         if seen || self.is_declared(text) || self.is_index(text, at) {
             return false;
         }

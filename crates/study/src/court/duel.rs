@@ -36,8 +36,12 @@ impl Case<'_> {
         let whole = [self.rivals[0].clone(), self.rivals[1].clone()];
         let extent = self.extent();
         let smaller = SMALLER.iter().filter(|&&size| extent.is_some_and(|extent| size < extent));
-        let parts = smaller.filter_map(|&size| Some((Some(size), self.first(size)?)));
-        for (size, models) in std::iter::once((None, whole)).chain(parts) {
+        for size in std::iter::once(None).chain(smaller.map(|&size| Some(size))) {
+            let models = match size {
+                None => Some(whole.clone()),
+                Some(size) => self.first(size).await,
+            };
+            let Some(models) = models else { continue };
             let part = self.with_models(&models);
             let Some(differ) = part.round(("free sign", -LARGEST), size, findings).await else {
                 continue;

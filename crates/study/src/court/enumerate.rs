@@ -36,7 +36,7 @@ impl Case<'_> {
         }
         let mut compared = Vec::new();
         for &size in &self.plan.sizes {
-            let Some(models) = self.first(size) else { continue };
+            let Some(models) = self.first(size).await else { continue };
             let part = self.with_models(&models);
             if part.shared.pairs.is_empty() {
                 continue;
@@ -125,12 +125,14 @@ impl Case<'_> {
     }
 
     /// Both models on the first elements of each set.
-    pub(crate) fn first(&self, size: u32) -> Option<[Subject; 2]> {
-        let part = |subject: &Subject| {
-            let model = subject.source.as_ref()?.model_of_first(size as usize)?;
+    pub(crate) async fn first(&self, size: u32) -> Option<[Subject; 2]> {
+        let desk = self.desk;
+        let part = async |subject: &Subject| {
+            let source = subject.source.as_ref()?;
+            let model = source.model_of_first(desk, size as usize).await?;
             Some(Subject { model: Rc::new(model), ..subject.clone() })
         };
-        Some([part(self.rivals[0])?, part(self.rivals[1])?])
+        Some([part(self.rivals[0]).await?, part(self.rivals[1]).await?])
     }
 
     pub(crate) fn with_models<'p>(&'p self, subjects: &'p [Subject; 2]) -> Case<'p> {

@@ -17,7 +17,10 @@ const DUELS: u64 = 4;
 impl Case<'_> {
     /// Breaks both rivals, family by family.
     pub(crate) async fn mutants(&self, findings: &Findings) -> Vec<Mutant> {
-        let parts = findings.control.and_then(|size| self.first(size));
+        let parts = match findings.control {
+            Some(size) => self.first(size).await,
+            None => None,
+        };
         let mut out = Vec::new();
         for side in [0, 1] {
             let families = self.rivals[side].model.families();

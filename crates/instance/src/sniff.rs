@@ -74,9 +74,12 @@ async fn guess_by_rows(text: &str, found: &[Line<'_>], pace: &Pace) -> Reader {
         _ => {}
     }
     pace.spend(4 * cells).await;
-    let filled = filled(&rows, style);
+    let arcs = match style.separator {
+        Separator::Space => are_arcs(&rows, common, style),
+        _ => are_arcs(&filled(&rows), common, style),
+    };
     pace.spend(4 * cells).await;
-    if are_arcs(&filled, common, style) {
+    if arcs {
         Reader::Arcs
     } else if table::is_likely(&text[..found.last().map_or(0, Line::end)], pace).await {
         Reader::Table
@@ -88,9 +91,9 @@ async fn guess_by_rows(text: &str, found: &[Line<'_>], pace: &Pace) -> Reader {
 }
 
 /// The rows without empty cells at their ends.
-fn filled(rows: &[Vec<String>], style: Style) -> Vec<Vec<String>> {
+fn filled(rows: &[Vec<String>]) -> Vec<Vec<String>> {
     let mut rows = rows.to_vec();
-    for row in rows.iter_mut().filter(|_| style.separator != Separator::Space) {
+    for row in &mut rows {
         while row.last().is_some_and(String::is_empty) {
             row.pop();
         }

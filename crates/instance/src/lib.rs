@@ -2,7 +2,8 @@
 //!
 //! [`read()`] takes a text and gives a [`Reading`]: an [`Instance`] where the text could be read,
 //! what was understood in sentences, and every place that was not, with its mend. Numbers are
-//! exact: decimal text becomes a rational. Nothing here fails or panics on any text.
+//! exact: decimal text becomes a rational. Nothing here fails or panics on any text. [`read_in_slices()`]
+//! does the same with a [`Pace`], letting go where a slice is spent; [`Slices`] drives it.
 //!
 //! | reader | takes |
 //! |---|---|

@@ -86,10 +86,13 @@ const WITNESSES: [(&str, &str, Witness, Witness); 8] = [
     ("job-shop/disjunctive", "job-shop/ranks", (Uniform, 4, 2), (Uniform, 6, 1)),
 ];
 
+/// A matrix, and the bounds of both rivals on it.
+type Bounds = (&'static str, [f64; 2]);
+
 /// Two rivals, stops on which the first one wins and stops on which the second does, each with the
 /// bounds of both. Found by a search over random matrices with HiGHS through another program; no
 /// published figures.
-const MATRICES: [(&str, &str, [(&str, [f64; 2]); 2]); 2] = [
+const MATRICES: [(&str, &str, [Bounds; 2]); 2] = [
     (
         "atsp/lifted-labels",
         "atsp/precedence-labels",

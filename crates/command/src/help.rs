@@ -87,8 +87,10 @@ prints tables.
   --log FILE      save the log of its search, with what hullward prove needs; the
                   scenario must have one rival, or --rival must name it
   --preset NAME   settings instead of the scenario's: bare (nothing that hides what
-                  is compared) or production (as a production solver would: general
-                  cuts, node work, reliability branching); limits stay
+                  is compared: no presolve, propagation or cuts; plans come from
+                  roundings and textbook round trips, which move no bound) or
+                  production (as a production solver would: general cuts, node
+                  work, reliability branching); limits stay
   --cell N        only cell N of its growth study, as JSON for hullward gather
 
 A rival that cannot be run does not keep the others from running.

@@ -13,7 +13,7 @@ use std::collections::BTreeMap;
 
 use model::{ColumnId, FamilyState, LabelId, Model, Number, RowId, nearest_f64};
 use record::results::PlanReport;
-use separate::{Membership, Separator, Violated};
+use separate::{Separator, Violated};
 use tree::{SuggestedBy, Suggestion};
 
 /// Lines that were not understood and are told at most.
@@ -123,7 +123,7 @@ impl Plan {
         let mut remarks = self.unread.clone();
         let mut count = 0;
         if value.is_none() {
-            let broken = self.broken(model, search.separators());
+            let (broken, others) = self.broken(model, search.separators());
             if broken.is_empty() {
                 remarks.push(if self.values.is_empty() {
                     "Nothing of the plan was understood".to_owned()
@@ -137,12 +137,14 @@ impl Plan {
             }
             count = u32::try_from(broken.len()).unwrap_or(u32::MAX);
             remarks.extend(broken);
+            remarks.extend(others);
         }
         PlanReport { feasible: value.is_some(), value, remarks, broken: count }
     }
 
-    /// The bounds, rows and families over subsets that the given values break by themselves.
-    fn broken(&self, model: &Model, separators: &[Separator]) -> Vec<String> {
+    /// The bounds, rows and members of families over subsets that the given values break by themselves;
+    /// beside them which families may have further ones.
+    fn broken(&self, model: &Model, separators: &[Separator]) -> (Vec<String>, Vec<String>) {
         let mut all = Vec::new();
         for (&column, &value) in &self.values {
             let found = &model.columns()[column.index()];
@@ -159,8 +161,13 @@ impl Plan {
         }
         let rows = (0..model.row_count()).map(RowId::from_index);
         all.extend(rows.filter_map(|row| self.row(model, row)));
-        all.extend(separators.iter().flat_map(|separator| self.members(model, separator)));
-        all
+        let mut others = Vec::new();
+        for separator in separators {
+            let (told, more) = self.members(model, separator);
+            all.extend(told);
+            others.extend(more);
+        }
+        (all, others)
     }
 
     /// A written row all of whose columns are given.
@@ -186,31 +193,35 @@ impl Plan {
         Some(format!("{name}: the left side is {}, and {asked} is asked", nearest_f64(&sum)))
     }
 
-    /// The members of a family over subsets that are broken and whose columns are all given: those
-    /// that a round of separation finds, or the one that the exact check does.
-    fn members(&self, model: &Model, separator: &Separator) -> Vec<String> {
+    /// The members of a family over subsets that are broken and whose columns are all given, and
+    /// whether others may be.
+    fn members(&self, model: &Model, separator: &Separator) -> (Vec<String>, Option<String>) {
         let x: Vec<f64> = (0..model.columns().len())
             .map(|j| self.values.get(&ColumnId::from_index(j)).copied().unwrap_or(0.0))
             .collect();
-        let Membership::Violated(first) = separator.membership(&x) else { return Vec::new() };
-        let mut round = separator.clone();
-        round.start(&x);
-        while round.advance(u64::MAX) == separate::Progress::Working {}
-        let mut found = round.take();
-        if found.is_empty() {
-            found.push(first);
-        }
-        let given = |member: &Violated| {
+        let (found, all) = separator.violated_members(&x);
+        let given = |member: &&Violated| {
             member.row.entries.iter().all(|(column, _)| self.values.contains_key(column))
         };
-        found.iter().filter(|member| given(member)).map(|member| told(model, member)).collect()
+        let told: Vec<String> =
+            found.iter().filter(given).map(|member| told(model, member)).collect();
+        let more = found.first().filter(|_| !all && !told.is_empty()).map(|member| {
+            let name = family(model, member);
+            format!(
+                "Sets of {name} that are told are those that separation finds: others may be broken"
+            )
+        });
+        (told, more)
     }
+}
+
+fn family<'a>(model: &'a Model, member: &Violated) -> &'a str {
+    &model.families()[model.subset_family(member.family).family.index()].name
 }
 
 /// A member that is broken, in words.
 fn told(model: &Model, member: &Violated) -> String {
-    let family = model.subset_family(member.family).family;
-    let name = &model.families()[family.index()].name;
+    let name = family(model, member);
     let labels: Vec<&str> = member.subset.iter().map(|&label| model.labels().name(label)).collect();
     format!("{name} for the set {{{}}} is broken by {}", labels.join(", "), member.violation)
 }

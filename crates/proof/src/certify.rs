@@ -183,6 +183,19 @@ impl Certifier {
         self.vertex.as_ref().filter(|_| self.exact).map(Vertex::point)
     }
 
+    /// The exact point of the last basis, one value a column, which may break bounds and rows where the
+    /// bound is not the optimum.
+    #[must_use]
+    pub fn vertex(&self) -> Option<Vec<Number>> {
+        self.vertex.as_ref().map(Vertex::point)
+    }
+
+    /// Whether it ended because the budget of ticks was spent.
+    #[must_use]
+    pub fn is_spent(&self) -> bool {
+        self.ticks >= self.budget.ticks
+    }
+
     /// The exact multipliers of the last basis.
     #[must_use]
     pub fn into_multipliers(self) -> Option<ExactMultipliers> {

@@ -44,6 +44,7 @@ mod small;
 #[cfg(test)]
 mod tests;
 mod vertex;
+mod words;
 
 pub use basis::{Standing, Standings};
 pub use bound::{bound, infeasible, quick_bound};

@@ -18,7 +18,7 @@ use crate::kernel::Objective;
 use crate::rows::{ExactRows, common_multiple};
 
 /// Bits of the grid under the largest multiplier.
-const GRID_BITS: i32 = 40;
+pub(crate) const GRID_BITS: i32 = 40;
 /// The largest denominator of a simple fraction.
 const LARGEST_DENOMINATOR: i64 = 5_000;
 /// How far a simple fraction may be from its multiplier, relative to 1 + |y|.
@@ -230,7 +230,7 @@ pub fn simple_fraction(value: f64) -> Option<(i64, i64)> {
 }
 
 /// The exponent e with 2ᵉ ≤ value < 2ᵉ⁺¹ of a positive normal number; 0 for 0.
-fn exponent(value: f64) -> i32 {
+pub(crate) fn exponent(value: f64) -> i32 {
     if value < f64::MIN_POSITIVE {
         return 0;
     }
@@ -239,6 +239,6 @@ fn exponent(value: f64) -> i32 {
 }
 
 /// 2^bits for −1022 ≤ bits ≤ 1023.
-fn power_of_two(bits: i32) -> f64 {
+pub(crate) fn power_of_two(bits: i32) -> f64 {
     f64::from_bits(u64::from((bits + 1023).unsigned_abs()) << 52)
 }

@@ -6,6 +6,7 @@ use dashu_int::{IBig, UBig, ops::Gcd};
 use model::{Model, Number, Row, RowId, Sense};
 
 use crate::implied;
+use crate::words::Words;
 
 /// Lower and upper bound of a column; `None` is infinite.
 pub type Bounds = (Option<Number>, Option<Number>);
@@ -39,6 +40,8 @@ pub struct ExactRows {
     coefficients: Vec<i64>,
     /// Rows whose scaled coefficients do not fit.
     wide: BTreeMap<u32, Vec<IBig>>,
+    /// Costs and sides in machine words.
+    pub(crate) words: Words,
 }
 
 /// One row times `scale`, in which every number is whole.
@@ -83,10 +86,12 @@ impl ExactRows {
         let cost_scale = common_denominator(costs.iter());
         let sign = if model.sense() == Sense::Maximise { -IBig::ONE } else { IBig::ONE };
         let bounds = bounds_of(model);
+        let costs: Vec<IBig> = costs.iter().map(|c| scaled(c, &cost_scale) * &sign).collect();
         let mut rows = Self {
             sense: model.sense(),
             offset: model.offset().clone(),
-            costs: costs.iter().map(|c| scaled(c, &cost_scale) * &sign).collect(),
+            words: Words::new(&costs),
+            costs,
             cost_scale,
             implied: bounds.clone(),
             bounds,
@@ -120,6 +125,7 @@ impl ExactRows {
         }
         let lower = row.lower.as_ref().map(|side| scaled(side, &scale));
         let upper = row.upper.as_ref().map(|side| scaled(side, &scale));
+        self.words.add((&self.cost_scale, &scale), (lower.as_ref(), upper.as_ref()));
         self.rows.push(ScaledRow { start, end: self.columns.len(), scale, lower, upper });
         place
     }
@@ -136,6 +142,12 @@ impl ExactRows {
         self.costs.len()
     }
 
+    /// What one exact sum looks at: non-zeros and columns.
+    #[must_use]
+    pub fn work(&self) -> u64 {
+        (self.columns.len() + self.costs.len()) as u64
+    }
+
     /// The non-zeros of all rows.
     pub(crate) fn nonzeros(&self) -> usize {
         self.columns.len()
@@ -146,6 +158,14 @@ impl ExactRows {
         match self.sense {
             Sense::Minimise => value + &self.offset,
             Sense::Maximise => &self.offset - value,
+        }
+    }
+
+    /// The columns of a row with their scaled coefficients, where these fit into words.
+    pub(crate) fn small_entries(&self, row: usize) -> Option<(&[u32], &[i64])> {
+        match self.entries(row) {
+            (columns, Coefficients::Small(values)) => Some((columns, values)),
+            (_, Coefficients::Wide(_)) => None,
         }
     }
 

@@ -3,3 +3,4 @@
 mod by_hand;
 mod certified;
 mod vertices;
+mod words;

@@ -1,5 +1,6 @@
 //! The separator of one family over subsets.
 
+use std::cmp::Ordering;
 use std::collections::BTreeSet;
 
 use model::{LabelId, Model, Number, Row, SubsetFamily, SubsetFamilyId, nearest_f64};
@@ -9,7 +10,7 @@ use crate::conditions::Conditions;
 use crate::method::{Choice, Exactness, Method, Oracle, choose};
 use crate::quadratic::Quadratic;
 use crate::search::{Search, fractional};
-use crate::{member, tolerance};
+use crate::{list, member, tolerance};
 
 /// The most members that a round hands out.
 const MOST_MEMBERS: usize = 100;
@@ -175,9 +176,7 @@ impl Separator {
         let mut members: Vec<Violated> =
             sets.iter().map(|set| self.violated(set, &self.x)).collect();
         members.retain(|member| member.violation > tolerance::VIOLATION);
-        members.sort_by(|a, b| {
-            b.violation.total_cmp(&a.violation).then_with(|| a.subset.cmp(&b.subset))
-        });
+        members.sort_by(by_violation);
         members
     }
 
@@ -187,6 +186,37 @@ impl Separator {
             self.exactness = Some(Exactness::Heuristic);
             self.description.push_str("; a limit was reached, so heuristic");
         }
+    }
+
+    /// Every member that `x`, whose integer columns are rounded, violates, judged as
+    /// [`Self::membership`] does, and whether there are no others: all are looked at where they are no
+    /// more than 4,096, else those that a round finds. The most violated first. Runs to its end:
+    /// `O(members · terms)`, or a round.
+    #[must_use]
+    pub fn violated_members(&self, x: &[f64]) -> (Vec<Violated>, bool) {
+        let x = self.compiled.rounded(x);
+        let listed = match &self.method {
+            Method::List(sets) => Some(sets.clone()),
+            _ => list::members(&self.family, &self.conditions),
+        };
+        let Some(sets) = listed else { return (self.round_at(&x), false) };
+        let near = -tolerance::VIOLATION * self.compiled.scale;
+        let is_near =
+            |set: &&Vec<usize>| self.compiled.violation(&flags(self.compiled.size, set), &x) > near;
+        let broken = sets.iter().filter(is_near).filter_map(|set| self.confirmed(set, &x));
+        let mut broken: Vec<Violated> = broken.collect();
+        broken.sort_by(by_violation);
+        (broken, true)
+    }
+
+    /// What a round finds at a whole point, or the one member that the exact check finds.
+    fn round_at(&self, x: &[f64]) -> Vec<Violated> {
+        let Membership::Violated(first) = self.membership(x) else { return Vec::new() };
+        let mut round = self.clone();
+        round.start(x);
+        while round.advance(u64::MAX) == Progress::Working {}
+        let found = round.take();
+        if found.is_empty() { vec![first] } else { found }
     }
 
     fn violated(&self, places: &[usize], x: &[f64]) -> Violated {
@@ -273,6 +303,11 @@ impl Separator {
         let over = member.row.upper.as_ref().is_some_and(|upper| activity > *upper);
         (under || over).then_some(member)
     }
+}
+
+/// The most violated first, equal ones by set.
+fn by_violation(a: &Violated, b: &Violated) -> Ordering {
+    b.violation.total_cmp(&a.violation).then_with(|| a.subset.cmp(&b.subset))
 }
 
 /// The sets by falling violation, then by set, cut to the most that a round hands out.

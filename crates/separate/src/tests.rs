@@ -6,3 +6,4 @@ mod integral;
 mod others;
 mod random;
 mod shapes;
+mod whole_points;

@@ -219,14 +219,24 @@ impl Search {
         self.acts.replays.insert(place, waiting);
     }
 
-    /// Lets a search that its limit of nodes has ended go on, where an act allows it more; it stands
-    /// still until [`Self::run`]. A replay raises the limit in the same place, before it is looked at.
+    /// Lets a search that its limit of nodes or of iterations has ended go on, where an act allows it
+    /// more; it stands still until [`Self::run`]. A replay raises the limit in the same place, before it
+    /// is looked at. A root that its limit left unsolved does not go on.
     fn reopen(&mut self, act: &Act) -> bool {
-        let Act::Rule(Rule::Nodes(most)) = act else { return false };
-        let more = most.is_none_or(|most| most > self.ledger.nodes);
-        let reopens = more && self.state == State::Finished(Ending::NodeLimit);
+        let Act::Rule(rule) = act else { return false };
+        let reopens = match rule {
+            Rule::Nodes(most) => {
+                let more = most.is_none_or(|most| most > self.ledger.nodes);
+                more && self.state == State::Finished(Ending::NodeLimit)
+            }
+            Rule::Iterations(most) => {
+                let more = most.is_none_or(|most| most > self.work().iterations);
+                more && self.state == State::Finished(Ending::IterationLimit)
+            }
+            _ => false,
+        };
         if reopens {
-            self.change(&Rule::Nodes(*most));
+            self.change(rule);
             (self.state, self.paused) = (State::Searching, true);
         }
         reopens

@@ -11,6 +11,7 @@ use model::{Model, nearest_f64};
 use separate::general::{Class, Frame, GeneralCut, choose, follows};
 
 use crate::cut_round::CutRound;
+use crate::decide::CAREFUL;
 use crate::event::{Event, NodeId, NodeState};
 use crate::ledger::Sources;
 use crate::pool::Pool;
@@ -102,6 +103,11 @@ impl Cutting {
     /// The basis of the last relaxation with cuts.
     pub(crate) fn basis(&self) -> Option<&Basis> {
         self.basis.as_ref()
+    }
+
+    /// The internal bound of that relaxation, before its point is taken.
+    pub(crate) fn cut_bound(&self) -> Option<f64> {
+        self.point.as_ref().map(|(bound, _)| *bound)
     }
 
     /// The internal bound and the point of that relaxation, once.
@@ -305,6 +311,7 @@ impl Search {
             self.note_cuts(None);
             return None;
         };
+        self.ledger.ticks += CAREFUL * relaxation.exact().work();
         let proved = relaxation.prove(&point.duals).map(|bound| signed(&self.model, bound));
         let proved = proved.as_ref().map_or(f64::NEG_INFINITY, float_below);
         let root = self.tree.node_mut(NodeId::ROOT);

@@ -12,6 +12,9 @@ use crate::target::{float_below, signed};
 /// it is proved.
 const ROUNDED: f64 = 1e-6;
 
+/// Sums that a careful proof from multipliers takes: one for each way of rounding them.
+pub(crate) const CAREFUL: u64 = 2;
+
 /// What the `Solved` event says beside the node.
 struct Verdict {
     state: NodeState,
@@ -24,20 +27,21 @@ impl Search {
     /// The node in hand is solved and its candidates are tried: close it or branch.
     pub(crate) fn decide(&mut self) -> Option<Progress> {
         self.job = Job::None;
-        if self.prove_root() || self.begin_probing() {
+        if self.prove_root() || self.begin_probing() || self.prove_closed() {
             return None;
         }
         let mut hand = self.hand.take()?;
         let point = hand.point.as_ref()?;
-        if !hand.exact {
-            let value = self.user(point.bound);
-            let quick = self.relaxation.as_ref()?.prove_quickly(&point.duals, value);
+        if !hand.tried {
+            let quick = self.proved_quickly(point);
             hand.proved = self.better(hand.proved.take(), quick);
         }
-        let closed = self.closed(&hand, point);
-        let choice = if closed { None } else { self.choice(&hand, &point.x) };
-        if choice.is_none() && !hand.exact && !self.suffices(hand.proved.clone()) {
-            let careful = self.relaxation.as_ref()?.prove(&point.duals);
+        let short = self.falls_short(&hand);
+        let seems_closed = self.closed(&hand, point);
+        let choice = if seems_closed && !short { None } else { self.choice(&hand, &point.x) };
+        let closed = seems_closed && choice.is_none();
+        if choice.is_none() && !hand.tried && !self.suffices(hand.proved.clone()) {
+            let careful = self.proved_carefully(point);
             hand.proved = self.better(hand.proved.take(), careful);
         }
         let held = self.is_to_be_held(hand.node);
@@ -56,11 +60,8 @@ impl Search {
             self.fix(hand.node, point);
         }
         let root = hand.node == NodeId::ROOT;
-        let state = if root && state == NodeState::Branched && !self.settings.search {
-            NodeState::Open
-        } else {
-            state
-        };
+        let waits = root && state == NodeState::Branched && !self.settings.search;
+        let state = if waits { NodeState::Open } else { state };
         let verdict = Verdict {
             state,
             bound: Some(self.user(point.bound)),
@@ -78,14 +79,28 @@ impl Search {
             Some(choice) => self.branch(hand.node, inherited, &choice, &point.x),
             None => {
                 self.ledger.node_work.cut_off += u32::from(hand.was_cut);
-                self.leaf(hand.node, hand.proved.as_ref());
+                self.leaf(&hand);
             }
         }
         self.announce();
         None
     }
 
-    fn closed(&self, hand: &Hand, point: &PointInHand) -> bool {
+    /// What the multipliers of a point prove, with little care.
+    fn proved_quickly(&mut self, point: &PointInHand) -> Option<Number> {
+        let relaxation = self.relaxation.as_ref()?;
+        self.ledger.ticks += relaxation.exact().work();
+        relaxation.prove_quickly(&point.duals, self.user(point.bound))
+    }
+
+    /// The same with care.
+    fn proved_carefully(&mut self, point: &PointInHand) -> Option<Number> {
+        let relaxation = self.relaxation.as_ref()?;
+        self.ledger.ticks += CAREFUL * relaxation.exact().work();
+        relaxation.prove(&point.duals)
+    }
+
+    pub(crate) fn closed(&self, hand: &Hand, point: &PointInHand) -> bool {
         let near = |value: f64| {
             let size = if value.abs() > 1.0 { value.abs() } else { 1.0 };
             point.bound >= value - ROUNDED * size
@@ -97,6 +112,7 @@ impl Search {
         let simplex = &self.relaxation.as_ref()?.simplex;
         let by_hand = self.choice_by_hand(hand.node, x).or(hand.probed_choice);
         let chosen = by_hand.or_else(|| self.chooser.choose(self.settings.branching, x));
+        let chosen = chosen.or(hand.sliver);
         chosen.or_else(|| self.chooser.any(x, |column| simplex.bounds(lp::Col(column.0))))
     }
 
@@ -155,20 +171,33 @@ impl Search {
         }
     }
 
-    /// Counts a leaf that was closed by its value; `proved` is its own exact bound, in the
-    /// direction of the objective.
-    pub(crate) fn leaf(&mut self, node: NodeId, proved: Option<&Number>) {
+    /// Counts a leaf in hand that was closed by its value.
+    pub(crate) fn leaf(&mut self, hand: &Hand) {
+        let checked = self.suffices(hand.proved.clone())
+            || self.target.proves_float(self.tree.node(hand.node).proved);
+        if checked || hand.tried {
+            self.close_leaf(hand.node, checked);
+        } else {
+            self.doubt_leaf(hand.node);
+        }
+    }
+
+    /// Counts a leaf that was closed by its value.
+    fn close_leaf(&mut self, node: NodeId, checked: bool) {
+        self.note_leaf(node);
+        self.count(checked);
+    }
+
+    /// Puts a leaf that was closed by its value aside, to be proved.
+    fn doubt_leaf(&mut self, node: NodeId) {
+        self.note_leaf(node);
+        self.doubtful.push(node);
+    }
+
+    fn note_leaf(&mut self, node: NodeId) {
         self.ledger.pruned = true;
         let by_step = self.target.closes_by_step(self.tree.node(node).bound);
         self.ledger.node_work.stepped += u32::from(by_step);
-        let own = proved.map(|bound| signed(&self.model, bound.clone()));
-        let checked = self.target.proves_float(self.tree.node(node).proved)
-            || own.is_some_and(|bound| self.target.proves(&bound));
-        if checked {
-            self.count(true);
-        } else {
-            self.doubtful.push(node);
-        }
     }
 
     pub(crate) fn count(&mut self, checked: bool) {
@@ -186,7 +215,9 @@ impl Search {
             return self.cut_off(ray);
         }
         let refuted = self.hand.as_ref()?.exact;
-        let checked = refuted || self.relaxation.as_ref()?.refutes(ray);
+        let relaxation = self.relaxation.as_ref()?;
+        self.ledger.ticks += CAREFUL * relaxation.exact().work();
+        let checked = refuted || relaxation.refutes(ray);
         if !checked && self.refute_root(ray) {
             return None;
         }
@@ -234,21 +265,26 @@ impl Search {
         self.solved(hand, &Verdict { state, bound: None, fractional: 0, branch_column: None });
     }
 
-    /// Drops every open node that the best known value closes.
+    /// Drops every open node that the best known value closes; those of which that is not proved yet
+    /// are put aside.
     pub(crate) fn drop_closed(&mut self) {
         let target = &self.target;
         for node in self.open.drain(|bound| target.closes(bound)) {
-            self.drop_node(node);
+            if self.target.proves_float(self.tree.node(node).proved) {
+                self.drop_node(node, true);
+            } else {
+                self.doubtful.push_dropped(node);
+            }
         }
         self.announce();
     }
 
-    /// Closes a node by its value without solving it.
-    pub(crate) fn drop_node(&mut self, node: NodeId) {
+    /// Closes a node by its value without solving it; `checked` says whether that is proved.
+    pub(crate) fn drop_node(&mut self, node: NodeId, checked: bool) {
         self.ledger.ticks += 1;
         self.tree.node_mut(node).state = NodeState::Pruned;
         self.events.push(Event::Dropped { node, state: NodeState::Pruned });
-        self.leaf(node, None);
+        self.close_leaf(node, checked);
     }
 
     /// At the end: nodes that could not be solved, and nodes closed by hand, count as closed by
@@ -264,8 +300,10 @@ impl Search {
     fn not_closed(&mut self, nodes: Vec<NodeId>) -> Vec<NodeId> {
         let mut left = Vec::new();
         for node in nodes {
-            if self.target.closes(self.tree.node(node).bound) {
-                self.leaf(node, None);
+            if self.target.proves_float(self.tree.node(node).proved) {
+                self.close_leaf(node, true);
+            } else if self.target.closes(self.tree.node(node).bound) {
+                self.doubt_leaf(node);
             } else {
                 left.push(node);
             }

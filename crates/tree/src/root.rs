@@ -110,13 +110,14 @@ impl Search {
         let direction = direction(&self.model);
         result.reduced_costs = point.reduced_costs.iter().map(|d| direction * d + 0.0).collect();
         result.x = point.x;
-        let proved = result.checked_bound.clone();
+        let closing =
+            Hand { proved: result.checked_bound.clone(), tried: true, ..Hand::new(hand.node, 0) };
         self.root = Some(result);
         self.job = crate::search::Job::None;
         self.plan = choice;
         match choice {
             None => {
-                self.leaf(NodeId::ROOT, proved.as_ref());
+                self.leaf(&closing);
                 self.end(Ending::Complete);
             }
             Some(_) if !self.settings.search => {
@@ -198,15 +199,23 @@ impl Search {
         Some((best.0, relaxation.prove(best.1)))
     }
 
-    /// Leaves the root: branches or holds it, or drops it where a heuristic has closed it.
+    /// The bound with which the root is left: its own, or that with general cuts.
+    pub(crate) fn opening_bound(&self) -> f64 {
+        let own = self.tree.node(NodeId::ROOT).bound;
+        let cut = self.cutting.as_ref().and_then(Cutting::cut_bound);
+        cut.filter(|&cut| cut > own).unwrap_or(own)
+    }
+
+    /// Leaves the root: branches or holds it, or drops it where a heuristic or general cuts have closed
+    /// it.
     pub(crate) fn open_root(&mut self) {
         let Some(choice) = self.plan.take() else { return };
-        let own = self.tree.node(NodeId::ROOT).bound;
+        let (own, bound) = (self.tree.node(NodeId::ROOT).bound, self.opening_bound());
         let cut = self.cutting.as_mut().and_then(Cutting::take_point);
-        let bound = cut.as_ref().map_or(own, |cut| if cut.0 > own { cut.0 } else { own });
-        if self.target.closes(bound) {
+        let known = self.target.proves_float(self.tree.node(NodeId::ROOT).proved);
+        if self.target.closes(bound) && (known || self.doubtful.opening() != Some(false)) {
             self.ledger.node_work.cut_off += u32::from(!self.target.closes(own));
-            self.drop_node(NodeId::ROOT);
+            self.drop_node(NodeId::ROOT, known || self.doubtful.opening_is_proved());
         } else if self.is_to_be_held(NodeId::ROOT) {
             let x = self.root.as_ref().map(|root| root.x.clone()).unwrap_or_default();
             self.hold(NodeId::ROOT, bound, x);

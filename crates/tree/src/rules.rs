@@ -18,7 +18,9 @@ pub enum Rule {
     /// The search ends when so many nodes are solved in all; `None` is no limit. One that has ended by
     /// this limit goes on where it is raised.
     Nodes(Option<u32>),
-    /// The search ends when so many simplex iterations are made in all; `None` is no limit.
+    /// The search ends after the node at which so many simplex iterations are made in all, the root
+    /// alone in the middle; `None` is no limit. One that has ended by this limit after its root goes on
+    /// where it is raised.
     Iterations(Option<u64>),
 }
 

@@ -78,6 +78,8 @@ pub(crate) enum Ending {
     Unbounded,
     /// As many nodes as the settings allow are solved: goes on where more are allowed.
     NodeLimit,
+    /// As many simplex iterations are made as the settings allow: goes on where more are allowed.
+    IterationLimit,
     /// Another limit, or something that stood in the way, in words.
     Stopped(String),
 }
@@ -154,6 +156,10 @@ pub(crate) struct Hand {
     pub(crate) exact: bool,
     /// Whether a proof from its basis was tried.
     pub(crate) tried: bool,
+    /// Whether that came to its end and left the node open.
+    pub(crate) short: bool,
+    /// A whole column that only its exact value shows to have a fraction.
+    pub(crate) sliver: Option<Choice>,
     /// Whether it is the root once more, for general cuts.
     pub(crate) cutting: bool,
     /// Rounds of general cuts at a node below the root.
@@ -178,6 +184,8 @@ impl Hand {
             proved: None,
             exact: false,
             tried: false,
+            short: false,
+            sliver: None,
             cutting: false,
             cut_rounds: 0,
             was_cut: false,
@@ -463,7 +471,7 @@ impl Search {
         };
         self.give_up_proofs();
         self.job = Job::None;
-        let may_go_on = ending == Ending::NodeLimit;
+        let may_go_on = matches!(ending, Ending::NodeLimit | Ending::IterationLimit);
         self.state = State::Finished(ending);
         self.acts.refuse_all(self.ledger.nodes, may_go_on);
     }

@@ -107,7 +107,8 @@ pub struct Settings {
     pub cutoff: Option<f64>,
     /// The search ends when so many nodes are solved.
     pub node_limit: Option<u32>,
-    /// The search ends when so many simplex iterations are made.
+    /// The search ends when so many simplex iterations are made: at the root in the middle of it, later
+    /// after the node in hand.
     pub iteration_limit: Option<u64>,
     /// Whether to search; otherwise the root relaxation only.
     pub search: bool,

@@ -76,7 +76,7 @@ impl Search {
             incumbent,
             gap: incumbent.zip(bound).and_then(|(incumbent, bound)| gap(incumbent, bound)),
             nodes: self.ledger.nodes,
-            open: self.open.len() + u32::from(self.hand.is_some()),
+            open: self.open.len() + self.put_aside() + u32::from(self.hand.is_some()),
             iterations: work.iterations,
             work: work.ticks,
             solution: self
@@ -97,6 +97,7 @@ impl Search {
         match ending {
             Ending::Unbounded => (Status::Unbounded, None),
             Ending::NodeLimit => (Status::Limit, Some("node limit".to_owned())),
+            Ending::IterationLimit => (Status::Limit, Some("iteration limit".to_owned())),
             Ending::Stopped(why) => (Status::Limit, Some(why.clone())),
             Ending::Complete => self.complete_standing(),
         }

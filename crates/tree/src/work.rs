@@ -103,6 +103,9 @@ impl Search {
                 self.begin_cuts()
             }
             Opening::Branch => {
+                if self.prove_opening() {
+                    return None;
+                }
                 self.opening = Opening::Done;
                 self.open_root();
                 None
@@ -112,15 +115,19 @@ impl Search {
     }
 
     fn next_node(&mut self) -> Option<Progress> {
+        // Before acts, so that what is open then does not depend on when they were made.
+        if self.prove_doubtful() {
+            return None;
+        }
         self.carry_out_acts();
         if matches!(self.state, State::Finished(_)) {
             return Some(Progress::Finished);
         }
         if self.open.len() == 0 {
             self.settle();
-        }
-        if self.prove_doubtful() {
-            return None;
+            if self.prove_doubtful() {
+                return None;
+            }
         }
         if self.open.len() == 0 {
             self.end(Ending::Complete);
@@ -133,6 +140,11 @@ impl Search {
         }
         if self.settings.node_limit.is_some_and(|limit| self.ledger.nodes >= limit) {
             self.end(Ending::NodeLimit);
+            return Some(Progress::Finished);
+        }
+        let spent = self.work().iterations;
+        if self.settings.iteration_limit.is_some_and(|limit| spent >= limit) {
+            self.end(Ending::IterationLimit);
             return Some(Progress::Finished);
         }
         let Some(node) = self.take_open() else {
@@ -162,10 +174,12 @@ impl Search {
         self.solve()
     }
 
-    /// Starts the LP in hand with the iterations that are left.
+    /// Starts the LP in hand. The root alone is left where the iterations run out; later they are looked
+    /// at between nodes, so that a search that goes on does what it would have done.
     pub(crate) fn solve(&mut self) -> Option<Progress> {
         let spent = self.work().iterations;
-        let left = self.settings.iteration_limit.map(|limit| limit.saturating_sub(spent));
+        let limit = self.settings.iteration_limit.filter(|_| self.state == State::Root);
+        let left = limit.map(|limit| limit.saturating_sub(spent));
         if left == Some(0) {
             return self.out_of_iterations();
         }
@@ -302,11 +316,6 @@ impl Search {
     }
 
     fn out_of_iterations(&mut self) -> Option<Progress> {
-        let hand = self.hand.as_ref()?;
-        if hand.node == NodeId::ROOT && !hand.cutting {
-            return self.root_stopped("iteration limit".to_owned());
-        }
-        self.end(Ending::Stopped("iteration limit".to_owned()));
-        Some(Progress::Finished)
+        self.root_stopped("iteration limit".to_owned())
     }
 }

@@ -141,7 +141,7 @@ fn full(problems: &[Named]) {
     );
     let mut within = 0;
     for problem in problems {
-        let ours = ours(&whole_model(problem), &production());
+        let ours = ours(&whole_model(problem), &Settings::production());
         let highs = highs(problem);
         let number =
             |value: Option<f64>| value.map_or_else(|| "–".to_owned(), |v| format!("{v:.3}"));

@@ -13,15 +13,22 @@ use crate::view::hands::Hands;
 const PRESETS: [(&str, Preset); 2] =
     [("bare", Preset::Bare), ("as a production solver would", Preset::Production)];
 
+/// What a choice does.
+const ANEW: &str = "Another rule searches every rival anew.";
+/// What the bare settings are.
+const BARE: &str = "Bare: no presolve, propagation or general cuts. Plans come from the relaxations, their \
+    roundings and, for round trips, nearest neighbour with 2-opt: they close nodes and move no bound. \
+    Another choice searches every rival anew.";
+
 /// The choices of a run.
 pub(crate) fn rules(run: &Run, hands: &Hands) -> Html {
     let own = PRESETS.iter().all(|(words, _)| *words != run.mode());
     let settings = if own { "settings, changed" } else { "settings" };
     html! {
         <>
-            { choice((settings, "preset"), &PRESETS, run.preset, Steer::Preset, hands) }
-            { choice(("branching", "rule"), &BRANCHING, run.branching, Steer::Rule, hands) }
-            { choice(("next node", "next"), &SELECTION, run.selection, Steer::Next, hands) }
+            { choice((settings, "preset", BARE), &PRESETS, run.preset, Steer::Preset, hands) }
+            { choice(("branching", "rule", ANEW), &BRANCHING, run.branching, Steer::Rule, hands) }
+            { choice(("next node", "next", ANEW), &SELECTION, run.selection, Steer::Next, hands) }
         </>
     }
 }
@@ -41,9 +48,9 @@ pub(crate) fn plan(text: Option<&String>, hands: &Hands) -> Html {
     }
 }
 
-/// One choice, with its name and the mark that tests find it by.
+/// One choice, with its name, the mark that tests find it by and what it does.
 fn choice<T: Copy + PartialEq + 'static>(
-    (name, mark): (&'static str, &'static str),
+    (name, mark, title): (&'static str, &'static str, &'static str),
     known: &'static [(&'static str, T)],
     used: T,
     steer: fn(T) -> Steer,
@@ -57,7 +64,7 @@ fn choice<T: Copy + PartialEq + 'static>(
         }
     });
     html! {
-        <label class="family" title="Another rule searches every rival anew.">
+        <label class="family" {title}>
             { name }
             <select data-testid={mark} {onchange}>
                 for (words, rule) in known {

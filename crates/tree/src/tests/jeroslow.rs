@@ -8,8 +8,8 @@ use std::rc::Rc;
 
 use model::{ColumnId, Model, ModelBuilder, Sense};
 
-use super::support::{row, rules, run, spec};
-use crate::{NodeId, Status};
+use super::support::{Random, row, rules, run, spec};
+use crate::{Act, Branching, NodeId, Progress, Search, Selection, Settings, Status};
 
 fn instance(n: i64) -> Rc<Model> {
     let mut builder = ModelBuilder::new("Jeroslow", Sense::Minimise);
@@ -42,6 +42,51 @@ fn the_tree_has_the_known_size() {
             assert!(events.iter().all(
                 |e| !matches!(e, crate::Event::Dropped { node, .. } if *node == NodeId::ROOT)
             ));
+        }
+    }
+}
+
+/// Branches every node that waits on some column of x that is not fixed there; to the end.
+fn by_hand(n: i64, selection: Selection) -> Search {
+    let settings = Settings { branching: Branching::ByHand, selection, ..Settings::default() };
+    let mut search = Search::new(instance(n), settings);
+    let mut random = Random(n.unsigned_abs());
+    loop {
+        match search.advance(u64::MAX) {
+            Progress::Finished => return search,
+            Progress::Working => {}
+            Progress::RootSolved | Progress::Paused => {
+                let held: Vec<NodeId> =
+                    search.open.iter().filter(|&node| search.holding.holds(node)).collect();
+                for node in held {
+                    let mut columns = search.branchable(node);
+                    columns.retain(|column| i64::from(column.0) < n);
+                    let place = random.below(i64::try_from(columns.len()).unwrap());
+                    let column = columns[usize::try_from(place).unwrap()];
+                    search.act(Act::Branch { node, column });
+                }
+                search.run(None);
+            }
+        }
+    }
+}
+
+/// The rule by hand: whatever columns a person chooses, the tree has the known size.
+#[test]
+fn the_tree_has_the_known_size_by_hand() {
+    for n in [3, 5, 7, 9, 11, 13] {
+        let nodes = u32::try_from(2 * binomial(n + 1) - 1).unwrap();
+        for selection in [Selection::BestBound, Selection::DepthFirst, Selection::BestEstimate] {
+            let mut search = by_hand(n, selection);
+            let summary = search.summary();
+            assert_eq!(summary.nodes, nodes, "n = {n}, {selection:?}");
+            assert_eq!(
+                (summary.status, summary.incumbent, summary.checked),
+                (Status::Optimal, Some(1.0), true)
+            );
+            let acted = search.take_acted();
+            assert_eq!(acted.len(), nodes as usize / 2, "one branching a node with children");
+            assert!(acted.iter().all(|one| one.refused.is_none()));
         }
     }
 }

@@ -282,6 +282,39 @@ fn a_raised_limit_lets_an_ended_search_go_on() {
     }
 }
 
+/// The same of a limit of iterations, which was looked at within a node: what was spent on a node that
+/// is left cannot be had again by a replay.
+#[test]
+fn a_raised_limit_of_iterations_lets_an_ended_search_go_on() {
+    let model = round_trip(&Random(3).distances(7), Form::Labels, Sense::Minimise);
+    for settings in [Settings::default(), Settings::production()] {
+        let whole = run(&model, &settings, u64::MAX);
+        let root = run(&model, &Settings { node_limit: Some(1), ..settings.clone() }, u64::MAX).1;
+        let (least, most) = (root.iterations, whole.1.iterations);
+        for limit in [least, least + 1, (least + most) / 2] {
+            let limited = Settings { iteration_limit: Some(limit), ..settings.clone() };
+            let mut search = Search::new(Rc::clone(&model), limited.clone());
+            finish(&mut search, 1_000);
+            let stopped = search.summary();
+            assert_eq!(stopped.stopped.as_deref(), Some("iteration limit"), "{limit} of {most}");
+            search.act(Act::Rule(Rule::Iterations(Some(stopped.iterations))));
+            assert!(search.is_over(), "no more iterations than before are allowed");
+            search.act(Act::Rule(Rule::Iterations(Some(stopped.iterations + 1))));
+            finish(&mut search, 1_000);
+            assert!(search.summary().nodes > stopped.nodes);
+            search.act(Act::Rule(Rule::Iterations(None)));
+            finish(&mut search, 1_000);
+            assert_eq!((search.take_events(), search.summary()), whole, "after {limit}");
+            let mut again = Search::new(Rc::clone(&model), limited);
+            for one in search.take_acted().into_iter().filter(|one| one.refused.is_none()) {
+                again.replay(one.after, one.act);
+            }
+            finish(&mut again, 77);
+            assert_eq!((again.take_events(), again.summary()), whole, "the replay differs");
+        }
+    }
+}
+
 /// Stopped at each plan that is better than all before, a search finds what it finds in one go.
 #[test]
 fn it_stands_still_at_each_better_plan() {

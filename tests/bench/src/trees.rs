@@ -4,7 +4,7 @@
 use std::rc::Rc;
 
 use model::{ColumnSpec, FamilyState, Model, ModelBuilder, Number, Row, Sense};
-use tree::{Branching, Classes, Cuts, Heuristics, NodeWork, Progress, Search, Selection, Settings};
+use tree::{Branching, Heuristics, Progress, Search, Selection, Settings};
 
 use crate::arguments::Arguments;
 use crate::classes::{Comparison, Measured, line, self_check};

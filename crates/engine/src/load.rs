@@ -4,7 +4,7 @@
 use std::collections::BTreeMap;
 use std::rc::Rc;
 
-use instance::Reading;
+use instance::{Instance, Reading};
 use model::{FamilyState, Model};
 use notation::syntax::Formulation;
 use notation::{Binding, Checked, Diagnostic, Expansion, Limits, Progress};
@@ -164,7 +164,7 @@ impl Notation {
         Ok(Loaded {
             title: entitled(&title, &model),
             complaints: warnings.iter().map(|found| of_diagnostic(&text, found)).collect(),
-            stops: reading.instance.as_ref().map_or_else(Vec::new, |i| i.stops().to_vec()),
+            stops: reading.instance.as_ref().map_or_else(Vec::new, on_the_map),
             model: Rc::new(model),
         })
     }
@@ -244,11 +244,16 @@ fn model_in_mps(text: &str, rival: &Rival, stops: Vec<String>) -> Result<Loading
     Ok(Loading::Model(Box::new(Loaded { title, complaints, stops, model: Rc::new(model) })))
 }
 
+/// The stops of an instance that have places on a map.
+fn on_the_map(instance: &Instance) -> Vec<String> {
+    if instance::has_layout(instance) { instance.stops().to_vec() } else { Vec::new() }
+}
+
 /// The stops of an instance; none where it cannot be read.
 fn stops(readings: &mut Readings, given: &InstanceText) -> Vec<String> {
     let reading = readings.read(given).ok();
     let instance = reading.as_ref().and_then(|reading| reading.instance.as_ref());
-    instance.map_or_else(Vec::new, |instance| instance.stops().to_vec())
+    instance.map_or_else(Vec::new, on_the_map)
 }
 
 /// The title given to a rival, else that of its model.

@@ -270,7 +270,8 @@ impl Drive {
                 | Reply::Studied(_)
                 | Reply::Audited(_)
                 | Reply::Log(_)
-                | Reply::Bound(_) => {}
+                | Reply::Bound(_)
+                | Reply::Memory { .. } => {}
             }
         }
     }

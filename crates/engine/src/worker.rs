@@ -71,6 +71,15 @@ impl Worker {
         busy || !self.requests.is_empty()
     }
 
+    /// Tells the page how much memory the host has given, and of how much. With `full` a search stands
+    /// still, so that its tree can be kept.
+    pub fn tell_memory(&mut self, bytes: u64, most: u64, full: bool) {
+        self.reply(Reply::Memory { bytes, most, full });
+        if let Some(lane) = self.lane.as_mut().filter(|lane| full && lane.is_busy()) {
+            lane.act(&Request::Pause, &mut self.outbox);
+        }
+    }
+
     /// Non-zeros touched by what is in hand so far: by its search, its proof or its study.
     #[must_use]
     pub fn ticks(&self) -> u64 {

@@ -246,3 +246,25 @@ fn a_log_with_any_leaf_tampered_with_is_refused() {
     }
     assert!(tried > 200 && kinds.len() == 4, "{tried} {kinds:?}");
 }
+
+/// What the host tells of its memory comes to the page; where little is left the search stands
+/// still, keeps its tree, and may go on.
+#[test]
+fn a_search_stands_still_before_memory_ends() {
+    let mut worker = loaded(&labels());
+    worker.handle(Request::Run { nodes: None });
+    for _ in 0..40 {
+        worker.advance(2_000);
+    }
+    worker.tell_memory(100, 1_000, false);
+    assert!(worker.advance(2_000), "there is room: the search goes on");
+    worker.tell_memory(900, 1_000, true);
+    while worker.advance(2_000) {}
+    let told: Vec<Reply> = worker.take().into_iter().map(|envelope| envelope.reply).collect();
+    let memory = told.iter().filter(|reply| matches!(reply, Reply::Memory { .. })).count();
+    assert_eq!(memory, 2);
+    let Some(Reply::Paused(report)) = told.last() else { panic!("{:?}", told.last()) };
+    let (_, last, _) = asked(&mut worker, Request::Run { nodes: None });
+    let last = last.expect("it goes on");
+    assert!(last.nodes > report.nodes && last.status != Status::Limit);
+}

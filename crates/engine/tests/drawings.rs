@@ -10,6 +10,10 @@ use record::scenario::{InstanceText, Rival, Scenario};
 
 const PATHS: &str = include_str!("../../../scenarios/paths.toml");
 const LOTS: &str = include_str!("../../../scenarios/lots.toml");
+const BENCHES: &str = include_str!("../../../scenarios/three-benches.toml");
+const ROLLS: &str = include_str!("../../../scenarios/rolls.toml");
+const EXAMS: &str = include_str!("../../../scenarios/exams.toml");
+const HALL: &str = include_str!("../../../scenarios/let-the-hall.toml");
 const DEPOTS: &str = include_str!("../../../scenarios/open-depots.toml");
 
 fn root(instance: InstanceText, id: &str) -> Option<NodeDetail> {
@@ -120,5 +124,108 @@ fn a_negative_cycle_is_named() {
         let mut stops = cycle.stops;
         stops.sort_unstable();
         assert_eq!((stops, cycle.total), (vec!["Island".to_owned(), "School".to_owned()], -3.0));
+    }
+}
+
+/// Each job's steps stand on their machines, each as long as the data say; a chart comes first.
+#[test]
+fn starts_are_a_chart_of_machines_over_time() {
+    let instance = scenario(BENCHES).instance.unwrap();
+    let detail = root(instance, "job-shop/disjunctive").unwrap();
+    let Picture::Strips { strips, time: true } = &detail.drawings[0].picture else {
+        panic!("{detail:?}")
+    };
+    let machines: Vec<&str> = strips.iter().map(|strip| strip.name.as_str()).collect();
+    assert_eq!(machines, ["saw", "plane", "paint"]);
+    let of = |machine: usize, job: &str| {
+        let part = strips[machine].parts.iter().find(|part| part.name == job).unwrap();
+        (part.from, part.to)
+    };
+    for (machine, job, time) in [(0, "chair", 5.0), (1, "frame", 5.0), (2, "gate", 1.0)] {
+        let (from, to) = of(machine, job);
+        assert!((to - from - time).abs() < 1e-9, "{job} on {machine}");
+    }
+    // frame: saw, then plane, then paint
+    assert!(of(0, "frame").1 <= of(1, "frame").0 + 1e-9);
+    assert!(of(1, "frame").1 <= of(2, "frame").0 + 1e-9);
+}
+
+/// Of starts by the hour, the rows of the hours say how long each takes.
+#[test]
+fn starts_by_period_are_a_chart_too() {
+    let instance = scenario(BENCHES).instance.unwrap();
+    let detail = root(instance, "job-shop/time-indexed").unwrap();
+    let Picture::Strips { strips, time: true } = &detail.drawings[0].picture else {
+        panic!("{detail:?}")
+    };
+    assert_eq!(strips.len(), 3, "a strip for each machine");
+    let parts = || strips.iter().flat_map(|strip| &strip.parts);
+    let begun: f64 = parts().map(|part| part.value).sum();
+    assert!((begun - 12.0).abs() < 1e-6, "each of twelve steps begins once: {begun}");
+    let saw = strips.iter().find(|strip| strip.name == "saw").unwrap();
+    let chair = saw.parts.iter().filter(|part| part.name == "chair");
+    assert!(chair.clone().count() > 0);
+    chair.for_each(|part| assert_eq!(part.to - part.from, 5.0));
+}
+
+/// Pieces lie in bins by weight times value, and what lies in a bin is within its room.
+#[test]
+fn pieces_lie_in_bins() {
+    let instance = scenario(ROLLS).instance.unwrap();
+    let detail = root(instance, "bins/assignment").unwrap();
+    let Picture::Strips { strips, time: false } = &detail.drawings[0].picture else {
+        panic!("{detail:?}")
+    };
+    let mut lies = 0.0;
+    for strip in strips {
+        let end = strip.parts.last().map_or(0.0, |part| part.to);
+        assert!(end <= strip.limit.unwrap() + 1e-6, "{strip:?}");
+        lies += end;
+    }
+    // 2 of 15, 3 of 13, 3 of 10, 3 of 8 and 2 of 7
+    assert!((lies - 137.0).abs() < 1e-6, "{lies}");
+}
+
+/// Vertices that may not share a colour are joined, as the data say; a colour is the class of its
+/// vertex.
+#[test]
+fn colours_and_stable_sets_are_drawn_on_their_graph() {
+    let edges = |detail: &NodeDetail| {
+        let graph = detail.drawings.iter().find_map(|drawing| match &drawing.picture {
+            Picture::Graph { vertices, edges, .. } => Some((vertices.clone(), edges.len())),
+            _ => None,
+        });
+        graph.unwrap_or_else(|| panic!("{:?}", detail.drawings))
+    };
+    let exams = root(scenario(EXAMS).instance.unwrap(), "colouring/assignment").unwrap();
+    let (vertices, joined) = edges(&exams);
+    assert_eq!((vertices.len(), joined), (10, 26));
+    assert!(vertices.iter().all(|vertex| !vertex.class.is_empty()));
+
+    let hall = root(scenario(HALL).instance.unwrap(), "stable-set/edges").unwrap();
+    let (vertices, joined) = edges(&hall);
+    assert_eq!((vertices.len(), joined), (14, 34));
+    assert!(vertices.iter().all(|vertex| vertex.value.is_some()));
+}
+
+/// Rivals whose variables have one index that is neither place, period nor vertex.
+const LEFT_TO_THE_TABLE: [&str; 5] =
+    ["bins/patterns", "cases/big-m", "cases/loose", "cases/multi-m", "quadratic/row-sums"];
+
+/// The solutions of every ready scenario's rivals are drawn somehow.
+#[test]
+fn every_ready_scenario_has_a_drawing() {
+    let folder = concat!(env!("CARGO_MANIFEST_DIR"), "/../../scenarios");
+    let mut files: Vec<_> =
+        std::fs::read_dir(folder).unwrap().map(|entry| entry.unwrap().path()).collect();
+    files.sort();
+    for path in files {
+        let scenario = scenario(&std::fs::read_to_string(&path).unwrap());
+        let instance = scenario.instance.clone().unwrap();
+        for rival in scenario.rivals.iter().filter_map(|rival| rival.from.as_deref()) {
+            let Some(detail) = root(instance.clone(), rival) else { continue };
+            println!("{rival}: {:?}", names(&detail));
+            assert_eq!(detail.drawings.is_empty(), LEFT_TO_THE_TABLE.contains(&rival), "{rival}");
+        }
     }
 }

@@ -21,6 +21,12 @@ pub struct Layout {
     pub computed: bool,
 }
 
+/// Whether an instance's stops have places: given, or to be computed from distances.
+#[must_use]
+pub fn has_layout(instance: &Instance) -> bool {
+    instance.points.is_some() || !instance.matrix().is_empty()
+}
+
 /// The places of an instance's stops; none when it is no round trip. O(n²) a step of the
 /// iteration, with fewer steps above 300 stops.
 #[must_use]

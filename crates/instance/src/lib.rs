@@ -51,7 +51,7 @@ mod tsplib;
 
 pub use complaint::{Complaint, Severity};
 pub use instance::{Datum, Instance, Points, Reader};
-pub use layout::{Layout, layout, layout_in_slices};
+pub use layout::{Layout, has_layout, layout, layout_in_slices};
 pub use number::{Number, number_text};
 pub use pace::{Pace, Slices};
 pub use read::{Reading, read, read_in_slices, read_part};

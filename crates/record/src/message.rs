@@ -13,9 +13,11 @@ use crate::scenario::{Act, FamilyState, InstanceText, Rival, Run};
 use crate::study::Report;
 use crate::typeset::Typeset;
 
+mod drawing;
 mod jobs;
 mod listing;
 
+pub use drawing::{Arc, Cycle, Drawing, Part, Picture, Strip, Vertex};
 pub use jobs::{LogJob, StudyJob};
 pub use listing::CatalogueEntry;
 
@@ -197,6 +199,15 @@ pub enum Reply {
     Understood(Box<RivalReport>),
     /// Long work on one thing goes on.
     Progress(Progress),
+    /// The worker's memory has grown.
+    Memory {
+        /// Bytes that it has taken.
+        bytes: u64,
+        /// Bytes that it can have.
+        most: u64,
+        /// Whether little is left, so that a search stands still.
+        full: bool,
+    },
     /// The root is solved.
     Root(Box<RootReport>),
     /// Events of the search since the last batch.
@@ -508,65 +519,6 @@ pub struct ColumnValue {
     /// The variable and its indices, as an act by hand names them; empty where this column is not
     /// branched on by hand at this node.
     pub on: Vec<String>,
-}
-
-/// A way to draw a solution.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
-pub struct Drawing {
-    /// The variables that it shows, with their indices' kind: "x on the map".
-    pub name: String,
-    /// What is drawn.
-    pub picture: Picture,
-}
-
-/// What is drawn of a solution.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
-pub enum Picture {
-    /// Arcs and values at stops.
-    Map {
-        /// The arcs with their value.
-        arcs: Vec<Arc>,
-        /// Values at stops, by place in [`InstanceReport::stops`].
-        at: Vec<(u32, f64)>,
-    },
-    /// Values over time, one series a variable.
-    Bars {
-        /// The periods.
-        periods: Vec<i64>,
-        /// A variable and its value in each period; `None` where it has none.
-        series: Vec<(String, Vec<Option<f64>>)>,
-    },
-    /// Values by pair.
-    Grid {
-        /// The labels of the rows.
-        rows: Vec<String>,
-        /// The labels of the columns.
-        columns: Vec<String>,
-        /// Row, column and value, where it is not 0.
-        cells: Vec<(u32, u32, f64)>,
-    },
-}
-
-/// A cycle of pairs, such as one of negative length.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
-pub struct Cycle {
-    /// Its stops in order; the first is not repeated.
-    pub stops: Vec<String>,
-    /// The sum along it.
-    pub total: f64,
-}
-
-/// An arc to draw, by stops.
-#[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
-pub struct Arc {
-    /// Where from, by place in [`InstanceReport::stops`].
-    pub from: u32,
-    /// Where to.
-    pub to: u32,
-    /// The value.
-    pub value: f64,
-    /// Its column; none for an arc that stands for a row.
-    pub column: Option<u32>,
 }
 
 /// A violated member of a family over subsets.

@@ -176,6 +176,18 @@ pub enum FamilyState {
     Out,
 }
 
+impl FamilyState {
+    /// The state as a scenario names it.
+    #[must_use]
+    pub const fn word(self) -> &'static str {
+        match self {
+            Self::In => "in",
+            Self::OnDemand => "on demand",
+            Self::Out => "out",
+        }
+    }
+}
+
 /// How the rivals are run.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
 pub struct Run {

@@ -7,7 +7,7 @@ mod markdown;
 mod reopen;
 
 use record::results::{Proof, RivalResult, Status};
-use record::scenario::{FamilyState, Rival, Scenario, letter};
+use record::scenario::{Rival, Scenario, letter};
 use record::study::Report;
 
 use crate::number::{count, full, of, percent, short};
@@ -118,14 +118,7 @@ fn named(evidence: &Evidence<'_>, place: usize, rival: &Rival) -> String {
         (None, Some(_)) => " (a model in MPS)".to_owned(),
         (None, None) => " (own formulation)".to_owned(),
     };
-    let states = rival.families.iter().map(|(name, state)| {
-        let state = match state {
-            FamilyState::In => "in",
-            FamilyState::OnDemand => "on demand",
-            FamilyState::Out => "out",
-        };
-        format!("{name} {state}")
-    });
+    let states = rival.families.iter().map(|(name, state)| format!("{name} {}", state.word()));
     let states: Vec<String> = states.collect();
     let states = if states.is_empty() { String::new() } else { format!("; {}", states.join(", ")) };
     format!("{own}: {title}{from}{states}")

@@ -24,6 +24,7 @@
 pub mod audit;
 pub mod axis;
 pub mod certificate;
+pub mod changes;
 pub mod csv;
 pub mod decision;
 pub mod difference;
@@ -37,4 +38,5 @@ pub mod number;
 pub mod opinion;
 pub mod pack;
 pub mod proof;
+pub mod spring;
 pub mod study;

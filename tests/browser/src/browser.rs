@@ -12,7 +12,7 @@ use tokio::time::{Instant, sleep};
 
 use crate::devtools::{Computed, Post};
 use crate::visit::Kind;
-use crate::{Outcome, fault};
+use crate::{Outcome, fault, memory};
 
 /// How long to wait for what should come soon.
 pub const SOON: Duration = Duration::from_secs(15);
@@ -27,6 +27,7 @@ const MARK: &str = "data-found-by-test";
 pub struct Browser {
     client: Client,
     kind: Kind,
+    group: Option<u32>,
 }
 
 /// Elements that may have a role, where the browser's tree of accessibility cannot be asked.
@@ -46,8 +47,18 @@ fn candidates(role: &str) -> String {
 }
 
 impl Browser {
-    pub(crate) fn new(client: Client, kind: Kind) -> Self {
-        Self { client, kind }
+    /// A browser whose processes are of this group.
+    pub(crate) fn new(client: Client, kind: Kind, group: Option<u32>) -> Self {
+        Self { client, kind, group }
+    }
+
+    /// Bytes of memory that the process of the page holds, its workers' included, as the operating
+    /// system counts them.
+    ///
+    /// # Errors
+    /// That the system does not say.
+    pub fn memory_taken(&self) -> Outcome<u64> {
+        memory::of_renderers(self.group.ok_or_else(|| fault("the driver has ended"))?)
     }
 
     pub(crate) fn kind(&self) -> Kind {
@@ -116,7 +127,10 @@ impl Browser {
     }
 
     /// A command of the browser's own protocol.
-    pub(crate) async fn protocol(&self, method: &str, parameters: Value) -> Outcome<Value> {
+    ///
+    /// # Errors
+    /// Those of the driver.
+    pub async fn protocol(&self, method: &str, parameters: Value) -> Outcome<Value> {
         Ok(self.client.issue_cmd(Post::protocol(method, &parameters)).await?)
     }
 

@@ -42,6 +42,11 @@ impl Listening {
         Err(fault(format!("{name} ended without saying where it listens")))
     }
 
+    /// The process group of the program and all that it started.
+    pub(crate) fn group(&self) -> Option<u32> {
+        self.child.id()
+    }
+
     /// What the line told.
     pub(crate) fn said(&self) -> &str {
         &self.said

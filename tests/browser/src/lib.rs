@@ -12,6 +12,7 @@
 
 mod devtools;
 mod driver;
+mod memory;
 mod server;
 
 pub mod browser;

@@ -64,6 +64,16 @@ impl Browser {
         Ok(path)
     }
 
+    /// Saves what is in view as it is, in `tests/browser/screens` under a name.
+    ///
+    /// # Errors
+    /// Those of the driver and of writing the file.
+    pub async fn keep_view(&self, name: &str) -> Outcome<()> {
+        let folder = server::root().join("tests/browser/screens");
+        fs::create_dir_all(&folder)?;
+        Ok(fs::write(folder.join(format!("{name}.png")), self.picture().await?)?)
+    }
+
     /// A picture of the whole page, from its top to its end.
     async fn whole_page(&self, screen: Screen) -> Outcome<Vec<u8>> {
         if self.kind() == Kind::Firefox {

@@ -100,7 +100,7 @@ where
         .connect(driver.said())
         .await?;
     client.goto(&address).await?;
-    let browser = Browser::new(client, kind);
+    let browser = Browser::new(client, kind, driver.group());
     browser.booted().await?;
     let outcome = test(&browser).await;
     browser.close().await?;

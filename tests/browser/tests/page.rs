@@ -93,5 +93,11 @@ mod helping;
 #[path = "page/trees.rs"]
 mod trees;
 
+#[path = "page/lasting.rs"]
+mod lasting;
+
+#[path = "page/hands.rs"]
+mod hands;
+
 #[path = "page/accessible.rs"]
 mod accessible;

@@ -14,7 +14,7 @@ use report::audit::sentences;
 use crate::browser::session::refusal;
 use crate::browser::worker::WorkerHandle;
 use crate::state::board::LaneAction;
-use crate::state::lane::Phase;
+use crate::state::lane::{Memory, Phase};
 use crate::state::pointer::Shared;
 use crate::state::tree::Tree;
 
@@ -169,6 +169,9 @@ impl LaneRun {
                 Some(LaneAction::Understood(*rival))
             }
             Reply::Progress(progress) => Some(LaneAction::Progress(progress)),
+            Reply::Memory { bytes, most, full } => {
+                Some(LaneAction::Memory(Memory { bytes, most, full }))
+            }
             Reply::Root(root) => {
                 self.rooted = true;
                 if !matches!(root.status, Status::Limit | Status::Error) {

@@ -9,7 +9,7 @@ use record::opinion::Opinion;
 use record::results::{ConflictReport, ErrorReport, RootReport, SearchReport, Status};
 use yew::Reducible;
 
-use crate::state::lane::{Lane, LaneId, Phase};
+use crate::state::lane::{Lane, LaneId, Memory, Phase};
 use crate::state::outcomes::{Kept, Outcome};
 use crate::state::pointer::Shared;
 use crate::state::tree::Tally;
@@ -71,6 +71,8 @@ pub(crate) enum LaneAction {
     Understood(RivalReport),
     /// Long work goes on.
     Progress(Progress),
+    /// The memory of the worker has grown.
+    Memory(Memory),
     /// The root is solved.
     Root(RootReport),
     /// What a second LP code says of the root.
@@ -225,6 +227,7 @@ impl Lane {
             }
             LaneAction::Understood(rival) => self.rival = Some(Shared::new(rival)),
             LaneAction::Progress(progress) => self.progress = Some(progress),
+            LaneAction::Memory(memory) => self.memory = Some(memory),
             LaneAction::Root(root) => {
                 self.root = Some(Shared::new(root));
                 self.phase = Phase::Ready;

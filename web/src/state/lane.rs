@@ -3,6 +3,7 @@
 use record::message::{Progress, RivalReport};
 use record::opinion::Opinion;
 use record::results::{ConflictReport, ErrorReport, RootReport, SearchReport};
+use report::number::count;
 
 use crate::state::pointer::Shared;
 use crate::state::tree::Tally;
@@ -60,6 +61,37 @@ impl Phase {
     }
 }
 
+/// The memory of a worker, in bytes.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) struct Memory {
+    /// What it has taken.
+    pub(crate) bytes: u64,
+    /// What it can have.
+    pub(crate) most: u64,
+    /// Whether little is left, so that the search was made to stand still.
+    pub(crate) full: bool,
+}
+
+/// Memory is told from here on.
+const TOLD: u64 = 256 << 20;
+
+impl Memory {
+    /// "640 of 4,295 MB"; nothing where it is little.
+    pub(crate) fn figure(self) -> Option<String> {
+        let megabytes = |bytes: u64| count(bytes / 1_000_000);
+        let told = self.bytes >= TOLD;
+        told.then(|| format!("{} of {} MB", megabytes(self.bytes), megabytes(self.most)))
+    }
+
+    /// What a search that was made to stand still says.
+    pub(crate) fn warning(self) -> Option<&'static str> {
+        self.full.then_some(
+            "Nearly all the memory that a browser gives one search is taken, so it was paused. Save \
+             its log, or the scenario; Run goes on until memory ends, and then the tree is lost.",
+        )
+    }
+}
+
 /// A lane.
 #[derive(Debug, Clone, Default)]
 pub(crate) struct Lane {
@@ -79,6 +111,8 @@ pub(crate) struct Lane {
     pub(crate) tally: Tally,
     /// What the worker is doing.
     pub(crate) progress: Option<Progress>,
+    /// The memory of the worker, once it told.
+    pub(crate) memory: Option<Memory>,
     /// Why there is no result.
     pub(crate) error: Option<Shared<ErrorReport>>,
     /// What happened to the worker, as a sentence; empty when nothing did.
@@ -116,5 +150,20 @@ impl Lane {
     /// Whether larger is better; `false` until the rival is understood.
     pub(crate) fn maximise(&self) -> bool {
         self.rival.as_ref().is_some_and(|rival| rival.maximise)
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn memory_is_told_once_it_is_much_and_warned_of_once_it_is_full() {
+        let memory = |bytes, full| Memory { bytes, most: 1 << 32, full };
+        assert_eq!(memory(1 << 20, false).figure(), None);
+        let figure = memory(640_000_000, false).figure();
+        assert_eq!(figure.as_deref(), Some("640 of 4,294 MB"));
+        assert!(memory(640_000_000, false).warning().is_none());
+        assert!(memory(3_758_096_384, true).warning().is_some());
     }
 }

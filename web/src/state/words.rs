@@ -124,20 +124,11 @@ pub(crate) fn node_state(state: NodeState) -> &'static str {
     }
 }
 
-/// The state of a family in words, as the scenario file writes it.
-pub(crate) fn family_state(state: FamilyState) -> &'static str {
-    match state {
-        FamilyState::In => "in",
-        FamilyState::OnDemand => "on demand",
-        FamilyState::Out => "out",
-    }
-}
-
 /// The state of a family from its words.
 pub(crate) fn family_state_from(words: &str) -> Option<FamilyState> {
     [FamilyState::In, FamilyState::OnDemand, FamilyState::Out]
         .into_iter()
-        .find(|&state| family_state(state) == words)
+        .find(|&state| state.word() == words)
 }
 
 /// A branching: `x[Ash → Birch] ≤ 0`.
@@ -228,7 +219,7 @@ mod tests {
     #[test]
     fn family_states_read_back() {
         for state in [FamilyState::In, FamilyState::OnDemand, FamilyState::Out] {
-            assert_eq!(family_state_from(family_state(state)), Some(state));
+            assert_eq!(family_state_from(state.word()), Some(state));
         }
         assert_eq!(family_state_from("perhaps"), None);
     }

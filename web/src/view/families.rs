@@ -10,7 +10,7 @@ use yew::prelude::*;
 use crate::state::document::{DocumentAction, Slot};
 use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
-use crate::state::words::{family_state, family_state_from};
+use crate::state::words::family_state_from;
 use crate::view::hands::use_hands;
 
 #[derive(Properties, PartialEq)]
@@ -74,8 +74,8 @@ fn Family(props: &FamilyProps) -> Html {
             <select data-family={family.name.clone()} {onchange}>
                 for state in states {
                     if separable || state != FamilyState::OnDemand {
-                        <option value={family_state(state)} selected={state == family.state}>
-                            { family_state(state) }
+                        <option value={state.word()} selected={state == family.state}>
+                            { state.word() }
                         </option>
                     }
                 }

@@ -6,7 +6,7 @@ use report::proof;
 use yew::prelude::*;
 
 use crate::browser::run::TreeCell;
-use crate::state::lane::Lane;
+use crate::state::lane::{Lane, Memory};
 use crate::state::lens::Lens;
 use crate::state::pointer::Shared;
 use crate::view::figure::{figure, gap, share};
@@ -52,6 +52,12 @@ pub(crate) fn Figures(props: &FiguresProps) -> Html {
                 <dt>{ "nodes" }</dt>
                 <dd data-testid="nodes">{ count(u64::from(nodes)) }</dd>
             </div>
+            if let Some(memory) = lane.memory.and_then(Memory::figure) {
+                <div>
+                    <dt>{ "memory" }</dt>
+                    <dd data-testid="memory">{ memory }</dd>
+                </div>
+            }
         </dl>
     }
 }

@@ -14,7 +14,7 @@ use crate::browser::run::at_the_limit;
 use crate::state::board::{BoardAction, Selection};
 use crate::state::document::{DocumentAction, Slot};
 use crate::state::editor::Draft;
-use crate::state::lane::{Lane, LaneId, Phase};
+use crate::state::lane::{Lane, LaneId, Memory, Phase};
 use crate::state::pointer::Shared;
 use crate::state::share::file_of;
 use crate::state::steer::{Steer, is_stopped};
@@ -83,6 +83,9 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                 <p class="small" data-testid="status">{ status(&props.lane) }</p>
                 if !props.lane.notice.is_empty() {
                     <p class="small warn" data-testid="notice">{ props.lane.notice.clone() }</p>
+                }
+                if let Some(words) = props.lane.memory.and_then(Memory::warning) {
+                    <p class="small warn" data-testid="memory-full">{ words }</p>
                 }
                 if !props.lane.proved.is_empty() {
                     <p class="small" data-testid="proved">{ props.lane.proved.clone() }</p>

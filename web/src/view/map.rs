@@ -36,6 +36,12 @@ pub(crate) struct MapProps {
     /// The column of the arc to name.
     #[prop_or_default]
     pub(crate) column: Option<u32>,
+    /// What joins the stops of a graph: thin lines, and no stop is a depot.
+    #[prop_or_default]
+    pub(crate) edges: Option<Shared<Vec<(u32, u32)>>>,
+    /// The value of each stop of a graph, which fills its mark.
+    #[prop_or_default]
+    pub(crate) fills: Option<Shared<Vec<f64>>>,
 }
 
 /// Places of stops and names in pixels.
@@ -68,8 +74,9 @@ pub(crate) fn Map(props: &MapProps) -> Html {
                     role="img" aria-label={props.label.clone()}
                 >
                     { tinted(props, &places) }
+                    { joined(props, &places) }
                     for (key, arc) in props.arcs.iter().enumerate() { { arc_path(key, arc, &places, props.column) } }
-                    { stops(&props.report, &places) }
+                    { stops(props, &places) }
                     { chosen(props, &places) }
                 </svg>
             }
@@ -127,11 +134,12 @@ fn radius(report: &InstanceReport, index: usize) -> f64 {
     if large { FIRST } else { RADIUS }
 }
 
-fn stops(report: &InstanceReport, places: &Places) -> Html {
+fn stops(props: &MapProps, places: &Places) -> Html {
+    let radius = |index| if props.edges.is_some() { FIRST } else { radius(&props.report, index) };
     html! {
         <>
-            for (index, (stop, &(x, y))) in report.stops.iter().zip(&places.stops).enumerate() {
-                <circle key={index} class="stop" cx={px(x)} cy={px(y)} r={radius(report, index).to_string()}>
+            for (index, (stop, &(x, y))) in props.report.stops.iter().zip(&places.stops).enumerate() {
+                <circle key={index} class={classes!("stop", filled(props, index))} cx={px(x)} cy={px(y)} r={radius(index).to_string()}>
                     <title>{ stop.label.clone() }</title>
                 </circle>
             }
@@ -144,6 +152,31 @@ fn stops(report: &InstanceReport, places: &Places) -> Html {
                 }
             }
         </>
+    }
+}
+
+/// How the mark of a stop is filled: by its value, in a graph where each has one.
+fn filled(props: &MapProps, index: usize) -> Option<&'static str> {
+    let value = *props.fills.as_ref()?.get(index)?;
+    Some(if value == 0.0 {
+        "none"
+    } else if is_fractional(value) {
+        "part"
+    } else {
+        "whole"
+    })
+}
+
+/// The edges of a graph, below everything that has a value.
+fn joined(props: &MapProps, places: &Places) -> Html {
+    let Some(edges) = &props.edges else { return Html::default() };
+    let ends = |&(from, to): &(u32, u32)| {
+        Some((*places.stops.get(from as usize)?, *places.stops.get(to as usize)?))
+    };
+    html! {
+        for ((x, y), (a, b)) in edges.iter().filter_map(ends) {
+            <line class="edge" x1={px(x)} y1={px(y)} x2={px(a)} y2={px(b)} />
+        }
     }
 }
 

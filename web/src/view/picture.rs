@@ -1,5 +1,5 @@
-//! A node's solution drawn: arcs and values on the map, bars over time, or a grid of values. The
-//! engine says which drawings suit, the likeliest first; a person may choose another.
+//! A node's solution drawn: arcs and values on the map, bars over time, lengths in strips, a graph, or a
+//! grid of values. The engine says which drawings suit, the likeliest first; a person may choose another.
 
 use record::message::{Arc, Cycle, Drawing, InstanceReport, NodeDetail, Picture};
 use report::number::{full, short};
@@ -7,7 +7,9 @@ use yew::prelude::*;
 
 use crate::state::pointer::Shared;
 use crate::view::bars::Bars;
+use crate::view::graph::Graph;
 use crate::view::map::Map;
+use crate::view::strips::Strips;
 
 #[derive(Properties, PartialEq)]
 pub(crate) struct PicturesProps {
@@ -108,6 +110,18 @@ fn caption(picture: &Picture) -> &'static str {
             "Width is the value; dashed where fractional. A drive keeps to the right of its way."
         }
         Picture::Bars { .. } => "Each variable on a scale of its own.",
+        Picture::Strips { time: true, .. } => {
+            "A length is how long the work takes; in a relaxation lengths may lie over one another."
+        }
+        Picture::Strips { .. } => {
+            "A length is weight times value; the stroke is the room there is."
+        }
+        Picture::Graph { arcs, .. } if !arcs.is_empty() => {
+            "Width is the value; dashed where fractional."
+        }
+        Picture::Graph { .. } => {
+            "Full is 1, a ring is 0, half in between; thin lines join what a row holds together."
+        }
         Picture::Grid { .. } => "Darker is more; blank is 0.",
     }
 }
@@ -135,6 +149,12 @@ fn Drawn(props: &DrawnProps) -> Html {
             />
         },
         Picture::Bars { .. } => html! { <Bars drawing={props.drawing.clone()} /> },
+        Picture::Strips { .. } => {
+            html! { <Strips drawing={props.drawing.clone()} column={props.column} /> }
+        }
+        Picture::Graph { .. } => {
+            html! { <Graph drawing={props.drawing.clone()} column={props.column} /> }
+        }
         Picture::Grid { rows, columns, cells } => heat(&props.drawing.name, rows, columns, cells),
     }
 }

@@ -4,10 +4,12 @@
 //! postcard bytes. The clock is read here alone, and only to end a slice in time and to send
 //! seldom enough; what is computed never depends on it.
 
+mod memory;
 mod pace;
 
 use std::collections::VecDeque;
 
+use memory::Memory;
 use pace::Pace;
 use wasm_bindgen::prelude::wasm_bindgen;
 
@@ -26,6 +28,7 @@ extern "C" {
 pub struct Host {
     worker: engine::Worker,
     pace: Pace,
+    memory: Memory,
     outbox: VecDeque<Vec<u8>>,
 }
 
@@ -35,7 +38,12 @@ impl Host {
     #[wasm_bindgen(constructor)]
     pub fn new() -> Host {
         std::panic::set_hook(Box::new(|panic| post_text(&panic.to_string())));
-        Host { worker: engine::Worker::new(), pace: Pace::new(), outbox: VecDeque::new() }
+        Host {
+            worker: engine::Worker::new(),
+            pace: Pace::new(),
+            memory: Memory::default(),
+            outbox: VecDeque::new(),
+        }
     }
 
     /// Takes a request, as postcard bytes of `record::message::Request`.
@@ -52,6 +60,9 @@ impl Host {
             let after = now();
             self.pace.learn(after - before);
             if !busy || !self.pace.fits(begun, after) {
+                if let Some(word) = self.memory.look(memory::taken()) {
+                    self.worker.tell_memory(word.bytes, memory::MOST, word.full);
+                }
                 if self.pace.send(busy, after) {
                     self.outbox.extend(self.worker.take_bytes());
                 }

@@ -1,13 +1,19 @@
 //! Ways to draw a solution, by the index sets of its variables: pairs of stops are arcs on the
-//! map, one stop is a value written at it, a whole number is a bar over time, other pairs are a
-//! grid. Where nothing else is drawn, other single indices are a grid of one column. What fits none
-//! of these is left to the table of values.
+//! map, one stop is a value written at it, a whole number is a bar over time, starts are a chart of
+//! machines, weights against a room are bins, what rows join is a graph, other pairs are a grid. Where
+//! nothing else is drawn, other single indices are a grid of one column. What fits none of these is left
+//! to the table of values.
+
+mod graph;
+mod strips;
 
 use std::collections::{BTreeMap, BTreeSet};
 
 use model::{ColumnId, FamilyId, LabelId, Model, NumberId, RowId, VariableId};
 use record::message::{Arc, Drawing, Picture};
 
+use self::graph::Graph;
+use self::strips::{Chart, Loads, Pulse};
 use super::tidy;
 
 /// Values of less are not drawn.
@@ -34,6 +40,10 @@ enum Way {
     Arcs(VariableId),
     Stops(VariableId, Option<FamilyId>),
     Bars(Vec<VariableId>, Vec<i64>),
+    Chart(Chart),
+    Pulse(Pulse),
+    Loads(Loads),
+    Graph(Graph),
     Grid(VariableId, Vec<LabelId>, Vec<LabelId>),
     Column(VariableId, Vec<LabelId>),
 }
@@ -58,8 +68,9 @@ impl Drawings {
             if let Some(times) = times(model, &tuples) {
                 periods.extend(times);
                 over_time.push(id);
-            } else if let Some(way) = drawings.way(model, id, &tuples) {
-                ways.push((rank(model, &way), way));
+            } else {
+                let found = drawings.ways_of(model, id, &tuples);
+                ways.extend(found.into_iter().map(|way| (rank(model, &way), way)));
             }
         }
         if !over_time.is_empty() && periods.len() <= PERIODS {
@@ -73,17 +84,26 @@ impl Drawings {
         drawings
     }
 
-    fn way(&self, model: &Model, id: VariableId, tuples: &[&[LabelId]]) -> Option<Way> {
+    /// The ways that suit a variable by its tuples and its rows.
+    fn ways_of(&self, model: &Model, id: VariableId, tuples: &[&[LabelId]]) -> Vec<Way> {
         let are_stops = tuples.iter().all(|tuple| tuple.iter().all(|l| self.stops.contains_key(l)));
-        let length = tuples.first()?.len();
-        if tuples.iter().any(|tuple| tuple.len() != length) {
-            return None;
+        let length = tuples.first().map_or(0, |tuple| tuple.len());
+        if length == 0 || tuples.iter().any(|tuple| tuple.len() != length) {
+            return Vec::new();
         }
-        match length {
-            2 if are_stops => Some(Way::Arcs(id)),
-            1 if are_stops => Some(Way::Stops(id, self.pairs_of(model, id))),
-            2 => grid(id, tuples),
-            _ => None,
+        let loads = Loads::new(model, id).map(Way::Loads);
+        match (length, are_stops) {
+            (2, true) => loads.into_iter().chain([Way::Arcs(id)]).collect(),
+            (1, true) => vec![Way::Stops(id, self.pairs_of(model, id))],
+            _ => {
+                let chart = Chart::new(model, id, length).map(Way::Chart);
+                let pulse = Pulse::new(model, id, length).map(Way::Pulse);
+                let vertices = Graph::of_vertices(model, id, length).map(Way::Graph);
+                let pairs = if length == 2 { Graph::of_pairs(model, id) } else { None };
+                let grid = if length == 2 { grid(id, tuples) } else { None };
+                let charts = chart.into_iter().chain(pulse).chain(vertices);
+                charts.chain(loads).chain(pairs.map(Way::Graph)).chain(grid).collect()
+            }
         }
     }
 
@@ -144,6 +164,26 @@ impl Drawings {
                     picture: Picture::Bars { periods: periods.clone(), series: series.collect() },
                 }
             }
+            Way::Chart(chart) => Drawing {
+                name: format!("{} as a chart over time", name(&chart.variable())),
+                picture: chart.picture(model, x),
+            },
+            Way::Pulse(pulse) => Drawing {
+                name: format!("{} as a chart over time", name(&pulse.variable())),
+                picture: pulse.picture(model, x),
+            },
+            Way::Loads(loads) => Drawing {
+                name: format!(
+                    "{} as lengths in ({})",
+                    name(&loads.variable()),
+                    model.families()[loads.family.index()].name
+                ),
+                picture: loads.picture(model, x),
+            },
+            Way::Graph(graph) => Drawing {
+                name: format!("{} {}", name(&graph.variable()), graph.stands()),
+                picture: graph.picture(model, x),
+            },
             Way::Grid(id, rows, columns) => Drawing {
                 name: format!("{} as a grid", name(id)),
                 picture: cells(model, *id, (rows, columns), x),
@@ -198,10 +238,14 @@ fn rank(model: &Model, way: &Way) -> u8 {
             let mut columns = model.variables()[id.index()].columns.clone();
             u8::from(!columns.all(|column| model.columns()[column as usize].integer))
         }
+        Way::Chart(_) | Way::Pulse(_) => 1,
+        Way::Loads(loads) if !loads.is_long(model) => 1,
+        Way::Graph(graph) if !graph.is_dense() => 1,
         Way::Stops(..) => 3,
         Way::Bars(..) => 2,
         Way::Grid(..) => 4,
-        Way::Column(..) => 5,
+        Way::Graph(_) | Way::Loads(_) => 5,
+        Way::Column(..) => 6,
     }
 }
 

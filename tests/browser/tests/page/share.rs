@@ -158,6 +158,31 @@ async fn a_link_says_whether_the_results_are_the_same() -> Outcome<()> {
     .await
 }
 
+/// A teammate sends the scenario back with one distance and one limit changed.
+#[tokio::test(flavor = "multi_thread")]
+async fn what_a_link_changes_is_told() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        paste(browser, SCENARIO).await?;
+        browser.shows("9 stops, 72 drives").await?;
+        bounds(browser).await?;
+        let mine =
+            parse(&unpack(&copied_by_hand(browser).await?)?).scenario.ok_or("no scenario")?;
+        open_link(browser, &mine).await?;
+        says(browser, "Opened from the link").await?;
+        let told = "return document.querySelector('[data-testid=changes]')?.textContent ?? ''";
+        assert_eq!(browser.script(told).await?, "", "nothing was changed");
+        let mut theirs = mine;
+        theirs.run.nodes = 77;
+        let gone = theirs.rivals.pop().ok_or("no rival")?;
+        open_link(browser, &theirs).await?;
+        says(browser, "2 changes to what was here").await?;
+        let told = browser.script(told).await?.to_string();
+        assert!(told.contains("nodes = 77") && told.contains(" is gone."), "{gone:?}: {told}");
+        Ok(())
+    })
+    .await
+}
+
 #[tokio::test(flavor = "multi_thread")]
 async fn a_link_is_copied_where_the_browser_allows_it() -> Outcome<()> {
     visit_chromium(Source::File, async |browser| {

@@ -28,6 +28,8 @@ const REST: u32 = 500;
 pub(crate) struct Opening {
     /// The scenario.
     pub(crate) scenario: Scenario,
+    /// What the browser kept of before, where the address holds something else.
+    pub(crate) before: Option<Scenario>,
     /// Whether it came with the address.
     pub(crate) from_link: bool,
     /// Whether the browser kept it.
@@ -44,7 +46,8 @@ pub(crate) struct Opening {
 pub(crate) fn opening() -> Opening {
     let refusal = match from_fragment(&fragment()) {
         Some(Ok(scenario)) => {
-            return Opening { scenario, from_link: true, restored: false, ..Opening::plain() };
+            let before = restore().map(|(scenario, _)| scenario);
+            return Opening { scenario, before, from_link: true, ..Opening::plain() };
         }
         Some(Err(refusal)) => Some(refusal),
         None => None,
@@ -64,6 +67,7 @@ impl Opening {
     fn plain() -> Self {
         Self {
             scenario: demo(),
+            before: None,
             from_link: false,
             restored: false,
             refusal: None,

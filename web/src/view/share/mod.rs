@@ -18,10 +18,15 @@ mod open;
 mod proof;
 mod verdict;
 
+use std::cell::RefCell;
+use std::rc::Rc;
+
+use report::changes::{Change, changes as changed};
 use yew::prelude::*;
 
 use crate::browser::share::download;
 use crate::state::document::{Document, DocumentAction};
+use crate::state::pointer::Shared;
 use crate::state::share::file_name;
 use crate::view::hands::use_hands;
 
@@ -58,9 +63,13 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
         use_callback((), move |said: Notice, ()| notice.set(said))
     };
     let dispatcher = hands.map(|hands| hands.document);
+    let (changes, here) = use_changes(props);
     let act = {
-        let dispatcher = dispatcher.clone();
+        let (dispatcher, changes) = (dispatcher.clone(), changes.setter());
         use_callback((), move |action: DocumentAction, ()| {
+            if let DocumentAction::Open(next) | DocumentAction::OpenPack(next, _) = &action {
+                changes.set(Shared::new(changed(&here.borrow().scenario(), next)));
+            }
             if let Some(document) = &dispatcher {
                 document.dispatch(action);
             }
@@ -125,9 +134,22 @@ pub(crate) fn Share(props: &ShareProps) -> Html {
                 />
             }
             <Proof log={(*log).clone()} end={proved} />
-            <NoticeView notice={(*notice).clone()} {act} save={save_offered} hide={tell.reform(|()| Notice::default())} />
+            <NoticeView notice={(*notice).clone()} changes={(*changes).clone()} {act} save={save_offered} hide={tell.reform(|()| Notice::default())} />
         </section>
     }
+}
+
+/// What was opened last changes of what was here before it, and the document as it is now.
+#[hook]
+fn use_changes(props: &ShareProps) -> (UseStateHandle<Shared<Vec<Change>>>, Rc<RefCell<Document>>) {
+    let before = props.opening.before.clone();
+    let opened = props.opening.scenario.clone();
+    let changes = use_state(move || {
+        Shared::new(before.map(|before| changed(&before, &opened)).unwrap_or_default())
+    });
+    let here = use_mut_ref(|| props.document.clone());
+    *here.borrow_mut() = props.document.clone();
+    (changes, here)
 }
 
 /// Opens and shuts a panel.

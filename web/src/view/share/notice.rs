@@ -2,10 +2,14 @@
 
 use record::message::Complaint;
 use record::scenario::Scenario;
+use report::changes::Change;
+use report::difference::LineOf;
+use report::number::of;
 use yew::prelude::*;
 
 use crate::demo::demo;
 use crate::state::document::DocumentAction;
+use crate::state::pointer::Shared;
 use crate::state::share::Refusal;
 use crate::state::words::{advice, sentence};
 use crate::view::share::keep::Opening;
@@ -62,6 +66,8 @@ impl Notice {
 #[derive(Properties, PartialEq)]
 pub(crate) struct NoticeProps {
     pub(crate) notice: Notice,
+    /// What that which was opened changes of what was here.
+    pub(crate) changes: Shared<Vec<Change>>,
     pub(crate) act: Callback<DocumentAction>,
     pub(crate) save: Callback<()>,
     pub(crate) hide: Callback<()>,
@@ -103,8 +109,40 @@ pub(crate) fn NoticeView(props: &NoticeProps) -> Html {
                         }
                     </ul>
                 }
-                if more > 0 { <p>{ format!("and {}", report::number::of(more, "further complaint")) }</p> }
+                { changed(&props.changes) }
+                if more > 0 { <p>{ format!("and {}", of(more, "further complaint")) }</p> }
             }
         </div>
+    }
+}
+
+/// What was changed, folded behind its count.
+fn changed(changes: &[Change]) -> Html {
+    if changes.is_empty() {
+        return Html::default();
+    }
+    let line = |line: &LineOf| {
+        html! {
+            <tr>
+                <th scope="row">{ if line.first { "before" } else { "now" } }</th>
+                <td><code>{ line.text.clone() }</code></td>
+            </tr>
+        }
+    };
+    html! {
+        <details class="folded small" data-testid="changes">
+            <summary>{ format!("{} to what was here", of(changes.len() as u64, "change")) }</summary>
+            <ul class="prose">
+                for change in changes {
+                    <li>
+                        { change.words.clone() }
+                        if !change.lines.told.is_empty() {
+                            <table class="lines"><tbody>{ for change.lines.told.iter().map(line) }</tbody></table>
+                        }
+                        if !change.lines.left_out.is_empty() { <p class="soft">{ change.lines.left_out.clone() }</p> }
+                    </li>
+                }
+            </ul>
+        </details>
     }
 }

@@ -3,12 +3,14 @@
 
 use record::scenario::{Field, Scenario, Study};
 use record::study::Report;
+use study::production::Pasted;
 use study::{Plan, Running, Subject};
 
 use crate::gather::{Gathering, gathered_at_once};
+use crate::native::instance_title;
 
 /// The kinds of study there are.
-pub const KINDS: [&str; 11] = [
+pub const KINDS: [&str; 12] = [
     "ladder",
     "families",
     "equivalence",
@@ -20,6 +22,7 @@ pub const KINDS: [&str; 11] = [
     "infeasibility",
     "symmetry",
     "variability",
+    "production",
 ];
 
 /// A study on its way.
@@ -43,6 +46,7 @@ struct Begun {
     study: Study,
     plan: Plan,
     cell: Option<u32>,
+    pasted: Pasted,
     gathering: Gathering,
 }
 
@@ -67,6 +71,7 @@ impl StudyRun {
                 study: study.clone(),
                 plan,
                 cell,
+                pasted: pasted(scenario, instance, study),
                 gathering: Gathering::new(scenario.clone(), instance),
             })),
         };
@@ -83,10 +88,11 @@ impl StudyRun {
             return false;
         }
         let subjects = std::mem::take(&mut begun.gathering.subjects);
-        let running = if subjects.is_empty() {
+        let running = if subjects.is_empty() && begun.study.kind != "production" {
             left(&begun.study, "no rival could be run".to_owned())
         } else {
-            self::begun(&begun.study, subjects, begun.plan.clone(), begun.cell)
+            let asked = (begun.cell, std::mem::take(&mut begun.pasted));
+            self::begun(&begun.study, subjects, begun.plan.clone(), asked)
         };
         self.stage = Stage::Running(running);
         false
@@ -119,6 +125,15 @@ impl StudyRun {
     }
 }
 
+/// The pasted table of a study, and where it is looked at from.
+fn pasted(scenario: &Scenario, instance: usize, study: &Study) -> Pasted {
+    let text = match study.fields.get("table") {
+        Some(Field::Text(text)) => text.clone(),
+        _ => String::new(),
+    };
+    Pasted { text, instance: instance_title(scenario, instance), first: instance == 0 }
+}
+
 fn left(study: &Study, why: String) -> Running<Vec<Report>> {
     let report = Report::Left { kind: study.kind.clone(), why };
     Running::new(|_| async { vec![report] })
@@ -128,7 +143,7 @@ fn begun(
     study: &Study,
     subjects: Vec<Subject>,
     plan: Plan,
-    cell: Option<u32>,
+    (cell, pasted): (Option<u32>, Pasted),
 ) -> Running<Vec<Report>> {
     let kind = study.kind.clone();
     Running::new(|desk| async move {
@@ -158,6 +173,10 @@ fn begun(
             "growth" => {
                 let growth = study::growth::growth(desk, subjects, plan, cell).await;
                 vec![Report::Growth(Box::new(growth))]
+            }
+            "production" => {
+                let found = study::production::production(desk, subjects, (plan, pasted)).await;
+                vec![Report::Production(Box::new(found))]
             }
             "order" => {
                 let orders = study::order::order(desk, subjects, plan).await;
@@ -219,9 +238,10 @@ fn plan(scenario: &Scenario, study: &Study) -> Result<Plan, String> {
             "production" => plan.growth.production = Some(whole(name, field)?),
             "shared" => plan.shared = list(name, field, text)?,
             "mutants" => plan.mutants = flag(name, field)?,
+            "table" => drop(text(name, field)?),
             _ => {
                 let known = "nodes, seed, duels, plans, rows, orders, sizes, seeds, classes, \
-                             production, shared, mutants";
+                             production, shared, mutants, table";
                 return Err(format!("the study has no \"{name}\"; there are {known}"));
             }
         }

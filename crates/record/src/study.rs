@@ -9,6 +9,7 @@ mod infeasibility;
 mod ladder;
 mod numerics;
 mod order;
+mod production;
 mod symmetry;
 mod tightening;
 mod variability;
@@ -24,7 +25,8 @@ pub use growth::{Cell, Fit, Growth, GrowthPair, SizeMean};
 pub use infeasibility::{ConflictRow, Infeasibility, Repair, RivalInfeasibility, Standing};
 pub use ladder::{Ladder, RivalLadder, Rung};
 pub use numerics::{FamilyNumerics, Numerics, RivalNumerics};
-pub use order::{Certificate, Order, OrderLevel, Relation, RowProof, SystemRow};
+pub use order::{Certificate, MappedColumn, Order, OrderLevel, Relation, RowProof, SystemRow};
+pub use production::{Against, Production};
 pub use symmetry::{Generator, Interchangeable, RivalSymmetry, Symmetry};
 pub use tightening::{FamilyTightening, RivalTightening, Tightening};
 pub use variability::{RivalVariability, Run, Variability, VariabilityPair};
@@ -54,6 +56,8 @@ pub enum Report {
     Symmetry(Symmetry),
     /// How much a search varies when nothing but the order of rows and columns changes.
     Variability(Box<Variability>),
+    /// Results of a production solver in the same statistics.
+    Production(Box<Production>),
     /// A study that could not be made, and why.
     Left {
         /// Its kind.
@@ -79,6 +83,7 @@ impl Report {
             Self::Infeasibility(_) => "infeasibility",
             Self::Symmetry(_) => "symmetry",
             Self::Variability(_) => "variability",
+            Self::Production(_) => "production",
             Self::Left { kind, .. } => kind,
         }
     }
@@ -111,6 +116,7 @@ impl Serialize for Line<'_> {
             Report::Infeasibility(report) => self.named(report, serializer),
             Report::Symmetry(report) => self.named(report, serializer),
             Report::Variability(report) => self.named(report.as_ref(), serializer),
+            Report::Production(report) => self.named(report.as_ref(), serializer),
             Report::Left { why, .. } => self.named(&LeftOut { left_out: why }, serializer),
         }
     }

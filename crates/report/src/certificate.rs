@@ -52,7 +52,16 @@ fn body(certificate: &Certificate) -> String {
             pairs(&proof.multipliers)
         )
     });
-    format!("\"system\":{system},\"bounds\":{bounds},\"proofs\":{proofs}")
+    let map = list(&certificate.map, |one| {
+        format!(
+            "{{\"column\":{},\"constant\":{},\"entries\":{}}}",
+            text(&one.column),
+            text(&one.constant),
+            pairs(&one.entries)
+        )
+    });
+    let map = if certificate.map.is_empty() { String::new() } else { format!("\"map\":{map},") };
+    format!("{map}\"system\":{system},\"bounds\":{bounds},\"proofs\":{proofs}")
 }
 
 fn pairs(pairs: &[(String, String)]) -> String {

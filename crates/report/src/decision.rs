@@ -10,7 +10,7 @@ use record::results::{Proof, RivalResult, Status};
 use record::scenario::{Rival, Scenario, letter};
 use record::study::Report;
 
-use crate::number::{count, full, of, percent, short};
+use crate::number::{count, of, percent, short, ten_digits};
 use crate::study::{Section, Table, and, overview, sections};
 
 /// Stands at the end of every record.
@@ -147,7 +147,7 @@ fn best_known(evidence: &Evidence<'_>) -> Option<String> {
         Some(format!("{} {}", result.rival, percent((best - bound).abs() / best.abs())))
     };
     let away: Vec<String> = evidence.results.iter().filter_map(away).collect();
-    let best = full(best);
+    let best = ten_digits(best);
     Some(format!(
         "The best value known is {best}, as the scenario says; root bounds are away from it: {}.",
         and(&away)
@@ -159,11 +159,11 @@ fn outcome(result: &RivalResult) -> Option<String> {
     let on =
         if result.instance.is_empty() { String::new() } else { format!(" on {}", result.instance) };
     let root = result.root.as_ref()?;
-    let bound = root.bound.map_or_else(|| "no bound".to_owned(), short);
+    let bound = root.bound.map_or_else(|| "no bound".to_owned(), ten_digits);
     let proved = if root.proof == Proof::Exact { ", checked" } else { "" };
     let search = match (&result.search, result.status) {
         (Some(search), Status::Optimal) => {
-            let value = search.incumbent.or(search.bound).map_or_else(String::new, short);
+            let value = search.incumbent.or(search.bound).map_or_else(String::new, ten_digits);
             let checked = if search.checked { ", every leaf checked" } else { "" };
             format!("; optimum {value} after {}{checked}", of(u64::from(search.nodes), "node"))
         }
@@ -171,8 +171,8 @@ fn outcome(result: &RivalResult) -> Option<String> {
             (Some(bound), Some(incumbent)) => format!(
                 "; stopped after {}: the best plan lies between {} and {}",
                 of(u64::from(search.nodes), "node"),
-                short(bound),
-                short(incumbent)
+                ten_digits(bound),
+                ten_digits(incumbent)
             ),
             _ => format!("; stopped after {}", of(u64::from(search.nodes), "node")),
         },

@@ -3,7 +3,7 @@
 use record::pack::Expected;
 use record::results::Status;
 
-use crate::number::full;
+use crate::number::ten_digits;
 
 /// What is compared of a rival, with the words for it.
 fn measures(one: &Expected) -> [(&'static str, Option<f64>); 7] {
@@ -42,8 +42,8 @@ pub fn differences(before: &Expected, now: &Expected, tolerance: f64) -> Vec<Str
     let differing = pairs.filter_map(|((words, before), (_, now))| {
         let before = before?;
         let same = now.is_some_and(|now| (before - now).abs() <= slack(before, tolerance));
-        let told = now.map_or_else(|| "none".to_owned(), full);
-        (!same).then(|| format!("{words} {told} in place of {}", full(before)))
+        let told = now.map_or_else(|| "none".to_owned(), ten_digits);
+        (!same).then(|| format!("{words} {told} in place of {}", ten_digits(before)))
     });
     clauses.extend(differing);
     clauses
@@ -70,10 +70,10 @@ pub fn beyond(before: &[&Expected], now: &Expected, tolerance: f64) -> Vec<Strin
             continue;
         }
         clauses.push(if high - low <= slack(high) {
-            format!("{words} {}, where {} was recorded", full(now), full(low))
+            format!("{words} {}, where {} was recorded", ten_digits(now), ten_digits(low))
         } else {
-            let (low, high) = (full(low), full(high));
-            format!("{words} {}, outside of the recorded {low} to {high}", full(now))
+            let (low, high) = (ten_digits(low), ten_digits(high));
+            format!("{words} {}, outside of the recorded {low} to {high}", ten_digits(now))
         });
     }
     clauses
@@ -103,6 +103,13 @@ mod tests {
         assert!(differences(&before, &one(3, Some(1e6 + 0.5)), TOLERANCE).is_empty());
         let told = differences(&before, &one(4, None), TOLERANCE);
         assert_eq!(told, ["rows 4 in place of 3", "root bound none in place of 1,000,000"]);
+    }
+
+    /// A bound of 44/3 was told as 14.666666666666668 in place of 14.666666666666666.
+    #[test]
+    fn values_are_told_to_ten_digits() {
+        let told = differences(&one(3, Some(44.0 / 3.0)), &one(3, Some(43.0 / 3.0)), TOLERANCE);
+        assert_eq!(told, ["root bound 14.33333333 in place of 14.66666667"]);
     }
 
     #[test]

@@ -34,6 +34,16 @@ pub fn full(value: f64) -> String {
     if value.is_finite() { signed_groups(&value.to_string()) } else { infinite(value) }
 }
 
+/// Ten significant digits, thousands separated: as much as two machines, or two codes, have in common.
+///
+/// ```
+/// assert_eq!(hullward_report::number::ten_digits(44.0 / 3.0), "14.66666667");
+/// ```
+#[must_use]
+pub fn ten_digits(value: f64) -> String {
+    full(format!("{value:.9e}").parse().unwrap_or(value))
+}
+
 /// A number with a given count of decimals.
 #[must_use]
 pub fn fixed(value: f64, decimals: usize) -> String {

@@ -10,6 +10,7 @@ mod infeasibility;
 mod ladder;
 mod numerics;
 mod order;
+mod production;
 mod symmetry;
 mod tightening;
 mod variability;
@@ -67,6 +68,7 @@ pub fn sections(report: &Report) -> Vec<Section> {
         Report::Infeasibility(report) => infeasibility::sections(report),
         Report::Symmetry(report) => symmetry::sections(report),
         Report::Variability(report) => variability::sections(report),
+        Report::Production(report) => production::sections(report),
         Report::Left { kind, why } => {
             let verdict = vec![format!("left out: {why}")];
             vec![Section { heading: format!("Study: {kind}"), verdict, ..Section::default() }]

@@ -9,19 +9,25 @@ use crate::shared::Shared;
 use crate::subject::Subject;
 
 /// A row or bound of one rival in the columns of the other: `Σ a x ≤ side`.
+#[derive(Debug, Clone)]
 pub(crate) struct Claim {
     pub(crate) name: String,
     pub(crate) entries: Vec<(ColumnId, Number)>,
     pub(crate) side: Number,
 }
 
-/// Why the rows of `outer` cannot be held against the other.
+/// Why the rows of `outer`, which lives in the shared variables, cannot be held against the other.
 pub(crate) fn obstacle(inner: &Subject, outer: &Subject, shared: &Shared) -> Option<String> {
+    if shared.pairs.len() < outer.model.columns().len() && !shared.pairs.is_empty() {
+        return Some(format!("{} has variables of its own", outer.letter));
+    }
+    incomparable(inner, outer, shared)
+}
+
+/// Why two relaxations cannot be compared in the shared variables at all.
+pub(crate) fn incomparable(inner: &Subject, outer: &Subject, shared: &Shared) -> Option<String> {
     if shared.pairs.is_empty() {
         return Some("they share no variable".to_owned());
-    }
-    if shared.pairs.len() < outer.model.columns().len() {
-        return Some(format!("{} has variables of its own", outer.letter));
     }
     if inner.model.sense() != outer.model.sense() || !same_costs(inner, outer, shared) {
         return Some("their objectives differ in the shared variables".to_owned());
@@ -59,27 +65,42 @@ pub(crate) fn claims(
 ) -> Result<Vec<Claim>, String> {
     let to: BTreeMap<ColumnId, ColumnId> =
         shared.pairs.iter().map(|&(inner, outer)| (outer, inner)).collect();
-    let model = &outer.model;
+    let turned = |claim: Claim| {
+        let entries = claim.entries.into_iter().filter_map(|(c, a)| Some((*to.get(&c)?, a)));
+        Claim { entries: entries.collect(), ..claim }
+    };
+    let mut out: Vec<Claim> = halves(&outer.model, most)?.into_iter().map(turned).collect();
+    bounds(&mut out, &outer.model, &to, inner);
+    if out.len() > most as usize { Err(too_many(most)) } else { Ok(out) }
+}
+
+pub(crate) fn too_many(most: u32) -> String {
+    format!("more than {most} rows to maximise")
+}
+
+/// Every row of a model, a claim for each of its sides, in its own columns; members of families over
+/// subsets among them.
+///
+/// # Errors
+/// A family has more members than `most`; the reason in words.
+pub(crate) fn halves(model: &Model, most: u32) -> Result<Vec<Claim>, String> {
     let mut out = Vec::new();
     let meant =
         |row: &RowId| model.families()[model.row_family(*row).index()].state != FamilyState::Out;
     for row in (0..model.row_count()).map(RowId::from_index).filter(meant) {
-        push(&mut out, &model.row_name(row), &model.row(row), &to);
+        push(&mut out, &model.row_name(row), &model.row(row));
     }
-    let too_many = || format!("more than {most} rows to maximise");
     for family in model.subset_families() {
-        for (name, row) in members(model, family, most).ok_or_else(too_many)? {
-            push(&mut out, &name, &row, &to);
+        for (name, row) in members(model, family, most).ok_or_else(|| too_many(most))? {
+            push(&mut out, &name, &row);
         }
     }
-    bounds(&mut out, model, &to, inner);
-    if out.len() > most as usize { Err(too_many()) } else { Ok(out) }
+    Ok(out)
 }
 
-fn push(out: &mut Vec<Claim>, name: &str, row: &Row, to: &BTreeMap<ColumnId, ColumnId>) {
+fn push(out: &mut Vec<Claim>, name: &str, row: &Row) {
     for (half, _) in sides_of(row.clone()) {
-        let entries = half.entries.into_iter().filter_map(|(c, a)| Some((*to.get(&c)?, a)));
-        out.push(Claim { name: name.to_owned(), entries: entries.collect(), side: half.side });
+        out.push(Claim { name: name.to_owned(), entries: half.entries, side: half.side });
     }
 }
 

@@ -10,6 +10,7 @@
 //! | [`mod@lift`] | which further values go with a plan in the natural variable |
 //! | [`mod@tightening`] | how small the coefficients of switches can be |
 //! | [`mod@growth`] | how rivals compare as instances grow |
+//! | [`mod@production`] | what results of a production solver say in the same statistics |
 //! | [`mod@infeasibility`] | which rows cannot hold together, and the cheapest way to relax them |
 //! | [`mod@symmetry`] | what a model does not tell apart, and rows that would |
 //! | [`mod@variability`] | how much a search varies with the order of rows and columns, a bound with the root |
@@ -31,6 +32,7 @@ mod maximise;
 pub mod numerics;
 pub mod order;
 pub mod plan;
+pub mod production;
 mod propagate;
 pub mod shared;
 mod statistics;

@@ -200,7 +200,8 @@ fn entries(row: &Row) -> Vec<(Col, f64)> {
     row.entries.iter().map(|(column, a)| (Col(column.0), nearest_f64(a))).collect()
 }
 
-fn simple(value: f64) -> Option<Number> {
+/// A simple fraction near a value.
+pub(crate) fn simple(value: f64) -> Option<Number> {
     let (top, bottom) = proof::simple_fraction(value)?;
     Some(Number::from_parts(IBig::from(top), UBig::try_from(bottom).ok()?))
 }

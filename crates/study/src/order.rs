@@ -4,9 +4,14 @@
 //! Else it is certified on this instance where every row and bound of one rival, in the shared
 //! variables, holds over the whole relaxation of the other: one linear program a row, whose bound
 //! is proved by exact multipliers, which are handed out. A row that does not hold is an objective on
-//! which the other rival is weaker. Else the bounds are what was observed.
+//! which the other rival is weaker. A rival with variables of its own is held to its rows in the
+//! shared ones and, where these hold, to an affine map from the other's variables to its own. What is
+//! not refuted by a row may be by an objective: the one of the instance, or a random one, under which
+//! the other bound is better. Else the bounds are what was observed.
 
+mod affine;
 mod certificate;
+mod objective;
 
 use std::collections::{BTreeMap, VecDeque};
 use std::rc::Rc;
@@ -14,13 +19,14 @@ use std::rc::Rc;
 use model::nearest_f64;
 use record::study::{Certificate, Order, OrderLevel, Relation};
 
-use crate::claims::{Claim, claims, obstacle};
+use crate::claims::{Claim, claims, incomparable};
 use crate::desk::Desk;
 use crate::maximise::Maximiser;
 use crate::plan::Plan;
 use crate::shared::{Shared, shared};
 use crate::subject::Subject;
 use crate::words::{direction, of, same};
+use affine::{Between, Map};
 
 /// A row is violated from here on.
 const VIOLATED: f64 = 1e-6;
@@ -71,17 +77,58 @@ impl Pair<'_> {
         order
     }
 
-    /// Whether the relaxation of `inner`, in the shared variables, lies within that of `outer`: row
-    /// by row, where the latter lives in the shared variables.
+    /// Whether the relaxation of `inner`, in the shared variables, lies within that of `outer`, in
+    /// these too: row by row, by a map where that one has variables of its own, and by objectives.
     async fn within(&self, inner: &Subject, outer: &Subject, shared: &Shared) -> Certificate {
         let refused = |why| Certificate { why, ..Certificate::default() };
-        if let Some(why) = obstacle(inner, outer, shared) {
+        if let Some(why) = incomparable(inner, outer, shared) {
             return refused(why);
         }
-        match claims(outer, shared, &inner.model, self.plan.rows) {
-            Ok(claims) => self.rows_hold([inner, outer], &claims).await,
-            Err(why) => refused(why),
+        let rivals = [inner, outer];
+        let found = if shared.pairs.len() == outer.model.columns().len() {
+            match claims(outer, shared, &inner.model, self.plan.rows) {
+                Ok(claims) => self.rows_hold(rivals, &claims).await,
+                Err(why) => refused(why),
+            }
+        } else {
+            self.mapped(rivals, shared).await
+        };
+        if found.holds.is_some() {
+            return found;
         }
+        objective::apart(self.desk, self.plan.seed, rivals, shared).await.unwrap_or(found)
+    }
+
+    /// The same where `outer` has variables of its own.
+    async fn mapped(&self, rivals: [&Subject; 2], shared: &Shared) -> Certificate {
+        let between = Between::new(rivals, shared, self.plan.rows);
+        let refused = |why| Certificate { why, ..Certificate::default() };
+        let (plain, own) = match between.rows() {
+            Ok(rows) => rows,
+            Err(why) => return refused(why),
+        };
+        let put_in = |claims: &[Claim], map: &Map| -> Vec<Claim> {
+            claims.iter().map(|claim| between.put_in(claim, map)).collect()
+        };
+        let mut claims = put_in(&plain, &Map::new());
+        let shared_rows = self.rows_hold(rivals, &claims).await;
+        if shared_rows.holds != Some(true) {
+            return shared_rows;
+        }
+        let [inner, outer] = rivals;
+        self.desk.say(format!("an affine map from {} to {}", inner.letter, outer.letter));
+        let map = match between.map(self.desk, &own).await {
+            Ok(map) => map,
+            Err(why) => return refused(why),
+        };
+        claims.extend(put_in(&own, &map));
+        let mut found = self.rows_hold(rivals, &claims).await;
+        if found.holds == Some(true) {
+            certificate::put_map(&mut found, rivals, &map);
+            return found;
+        }
+        // A row that does not hold with this map refutes the map and not the order.
+        refused("the affine map does not meet every row in exact arithmetic".to_owned())
     }
 
     async fn rows_hold(&self, [inner, outer]: [&Subject; 2], claims: &[Claim]) -> Certificate {
@@ -196,7 +243,8 @@ fn chain(known: &[catalogue::Relation], from: &str, to: &str) -> Option<String> 
 fn certified(order: &mut Order) -> bool {
     let [forth, back] = &order.certificates;
     let sentence = |certificate: &Certificate| {
-        format!("{} proved over the other's relaxation", of(certificate.rows, "row"))
+        let by = if certificate.map.is_empty() { "" } else { ", by an affine map" };
+        format!("{} proved over the other's relaxation{by}", of(certificate.rows, "row"))
     };
     (order.relation, order.source) = match (forth.holds, back.holds) {
         (Some(true), Some(true)) => {
@@ -206,8 +254,7 @@ fn certified(order: &mut Order) -> bool {
         (_, Some(true)) => (Relation::NeverStronger, sentence(back)),
         (Some(false), Some(false)) => {
             let source = format!(
-                "{} can be violated by one, {} by the other: each is an objective on which the \
-                 other is stronger",
+                "{} for one, {} for the other: each is an objective on which the other is stronger",
                 forth.witness, back.witness
             );
             (Relation::Incomparable, source)

@@ -1,5 +1,7 @@
 //! Certificates of the strength order, checked again from their JSON alone: fractions of our own in
-//! 128 bits, no code of the studies. What they rest on is compared with the rows of the model.
+//! 128 bits, no code of the studies. What they rest on is compared with the rows of the model. Where a
+//! rival has variables of its own, what is proved is compared with its rows after the affine map was put
+//! in for them.
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 
@@ -8,7 +10,7 @@ use std::rc::Rc;
 
 use catalogue::{Class, find, generate};
 use instance::{Instance, read};
-use model::{Model, RowId};
+use model::{ColumnId, Model, RowId};
 use record::study::Report;
 use serde_json::Value;
 use study::{Plan, Running, Source, Subject, model_of};
@@ -177,6 +179,90 @@ fn what_is_certified_holds_by_the_multipliers_that_are_handed_out() {
         }
     }
     assert!(rows > 50, "{rows}");
+}
+
+/// The rows of a rival as they must be proved: with the affine map put in for its own variables, each side
+/// as `Σ a x ≤ side`, by the columns of the other.
+fn put_in(model: &Model, map: &Value) -> Vec<(BTreeMap<String, Fraction>, Fraction)> {
+    let map: BTreeMap<String, &Value> = map
+        .as_array()
+        .unwrap()
+        .iter()
+        .map(|one| (one["column"].as_str().unwrap().to_owned(), one))
+        .collect();
+    let mut out = Vec::new();
+    let mut put = |own: Vec<(String, Fraction)>, side: Option<Fraction>, sign: i128| {
+        let Some(side) = side else { return };
+        let sign = Fraction(sign, 1);
+        let (mut entries, mut rest) = (BTreeMap::new(), side.times(sign));
+        for (column, a) in own {
+            let a = a.times(sign);
+            let Some(one) = map.get(&column) else {
+                let at = entries.entry(column).or_insert(Fraction(0, 1));
+                *at = at.plus(a);
+                continue;
+            };
+            rest = rest.minus(a.times(Fraction::read(one["constant"].as_str().unwrap())));
+            for (through, b) in self::entries(&one["entries"]) {
+                let at = entries.entry(through).or_insert(Fraction(0, 1));
+                *at = at.plus(a.times(b));
+            }
+        }
+        entries.retain(|_, a| a.0 != 0);
+        out.push((entries, rest));
+    };
+    let read = |number: &model::Number| Fraction::read(&number.to_string());
+    for id in (0..model.row_count()).map(RowId::from_index) {
+        let row = model.row(id);
+        let own: Vec<(String, Fraction)> =
+            row.entries.iter().map(|(c, a)| (model.column_name(*c), read(a))).collect();
+        put(own.clone(), row.upper.as_ref().map(read), 1);
+        put(own, row.lower.as_ref().map(read), -1);
+    }
+    for (place, column) in model.columns().iter().enumerate() {
+        let own = vec![(model.column_name(ColumnId::from_index(place)), Fraction(1, 1))];
+        let side = |id: Option<model::NumberId>| id.map(|id| read(model.numbers().exact(id)));
+        put(own.clone(), side(column.upper), 1);
+        put(own, side(column.lower), -1);
+    }
+    out
+}
+
+/// Rivals that have variables of their own: labels from a flow of one commodity (Gouveia & Pires 1999,
+/// European Journal of Operational Research 112), and that flow from one of many commodities, added up.
+#[test]
+fn an_affine_map_carries_one_relaxation_into_another_with_variables_of_its_own() {
+    for (stronger, weaker, size) in [
+        ("atsp/one-commodity", "atsp/labels", 5),
+        ("atsp/multi-commodity", "atsp/one-commodity", 4),
+    ] {
+        let text = generate("atsp", size, Class::Uniform, 1).unwrap();
+        let data = read(&text, None).instance.unwrap();
+        let subjects = vec![subject("A", stronger, &data), subject("B", weaker, &data)];
+        let [inner, outer] = [0, 1].map(|place| Rc::clone(&subjects[place].model));
+        let mut running = Running::new(|desk| study::order::order(desk, subjects, Plan::default()));
+        while !running.advance(100_000) {}
+        let order = running.take().unwrap().remove(0);
+        let certificate = &order.certificates[0];
+        assert_eq!(certificate.holds, Some(true), "{stronger} {weaker}: {certificate:?}");
+        assert!(!certificate.map.is_empty(), "{stronger} {weaker}");
+        let text = report::certificate::json(&[Report::Order(Box::new(order))]).unwrap();
+        let all: Value = serde_json::from_str(&text).unwrap();
+        let found = &all[0];
+        for row in found["system"].as_array().unwrap() {
+            assert!(is_row_of(&inner, row), "{stronger}: {row}");
+        }
+        checked(found);
+        // Every row and bound of the weaker one is among what is proved.
+        let proofs = found["proofs"].as_array().unwrap();
+        let proved: Vec<(BTreeMap<String, Fraction>, Fraction)> = proofs
+            .iter()
+            .map(|one| (entries(&one["entries"]), Fraction::read(one["side"].as_str().unwrap())))
+            .collect();
+        for needed in put_in(&outer, &found["map"]) {
+            assert!(proved.contains(&needed), "{stronger} {weaker}: {needed:?}");
+        }
+    }
 }
 
 #[test]

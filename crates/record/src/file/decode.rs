@@ -38,7 +38,7 @@ const RUN: [&str; 15] = [
 ];
 const NODE_WORK: [(&str, ()); 3] =
     [("propagation", ()), ("reduced costs", ()), ("objective step", ())];
-const STUDIES: [(&str, ()); 11] = [
+const STUDIES: [(&str, ()); 12] = [
     ("ladder", ()),
     ("families", ()),
     ("equivalence", ()),
@@ -50,6 +50,7 @@ const STUDIES: [(&str, ()); 11] = [
     ("numerics", ()),
     ("symmetry", ()),
     ("infeasibility", ()),
+    ("production", ()),
 ];
 
 /// The words for the readers of instances.

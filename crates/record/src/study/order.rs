@@ -86,6 +86,13 @@ pub struct Certificate {
     pub violation: Option<f64>,
     /// Why it was not tried, or not to the end.
     pub why: String,
+    /// Where an objective tells them apart, and not a row: the bound of this relaxation under it, and
+    /// that of the other, which is the better one.
+    #[serde(default)]
+    pub apart: Option<(f64, f64)>,
+    /// Where the other rival has variables of its own: what stands for each of them in the proofs.
+    #[serde(default)]
+    pub map: Vec<MappedColumn>,
     /// The objective of the witness: coefficients by column.
     pub objective: Vec<(String, String)>,
     /// The point of the relaxation that violates it most: values by column, 0 left out.
@@ -96,6 +103,18 @@ pub struct Certificate {
     pub system: Vec<SystemRow>,
     /// The bounds of its columns that proofs use; an infinite one is empty.
     pub bounds: Vec<(String, String, String)>,
+}
+
+/// A variable of the other rival as an affine expression in the columns of this relaxation. Numbers are
+/// fractions.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct MappedColumn {
+    /// The column of the other rival.
+    pub column: String,
+    /// The constant.
+    pub constant: String,
+    /// Its coefficients by column of this relaxation.
+    pub entries: Vec<(String, String)>,
 }
 
 /// The proof of one row, `Σ a x ≤ side`: with d = a − Σ y·row, its left side is at most

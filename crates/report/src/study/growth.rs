@@ -13,13 +13,19 @@ its rival looks better than it is. Ratios are paired: the same instances for bot
 pub(super) fn sections(growth: &Growth) -> Vec<Section> {
     let mut sections = vec![sizes(growth)];
     if !growth.pairs.is_empty() {
-        sections.push(pairs(growth));
+        sections.push(pairs(&growth.pairs, "work"));
     }
     if !growth.fits.is_empty() {
         sections.push(fits(growth));
     }
     if !growth.profile.is_empty() {
-        sections.push(profile(growth));
+        let mut rivals: Vec<&str> = Vec::new();
+        for cell in &growth.cells {
+            if !rivals.contains(&cell.rival.as_str()) {
+                rivals.push(&cell.rival);
+            }
+        }
+        sections.push(profile(&growth.profile, &rivals, "work"));
     }
     sections
 }
@@ -40,7 +46,7 @@ fn sizes(growth: &Growth) -> Section {
             growth.data,
             of(u64::from(growth.nodes), "node")
         ),
-        verdict: growth.pairs.iter().map(verdict).collect(),
+        verdict: growth.pairs.iter().map(|pair| verdict(pair, "work")).collect(),
         table: Some(table),
         notes,
     }
@@ -58,13 +64,14 @@ fn mean(mean: &SizeMean) -> Vec<String> {
     ]
 }
 
-fn verdict(pair: &GrowthPair) -> String {
+/// A pair in a sentence; `what` is "work", "time" or "nodes".
+pub(super) fn verdict(pair: &GrowthPair, what: &str) -> String {
     let [a, b] = &pair.rivals;
     if pair.instances == 0 {
         return format!("{a} and {b}: neither was solved on any instance within the limit.");
     }
     let times = format!(
-        "{} times the work (95 % interval {} to {}, {})",
+        "{} times the {what} (95 % interval {} to {}, {})",
         short(pair.ratio),
         short(pair.interval.0),
         short(pair.interval.1),
@@ -83,22 +90,15 @@ fn verdict(pair: &GrowthPair) -> String {
         interval: (1.0 / pair.interval.1, 1.0 / pair.interval.0),
         ..pair.clone()
     };
-    verdict(&turned)
+    verdict(&turned, what)
 }
 
-fn pairs(growth: &Growth) -> Section {
-    let head = [
-        "pair",
-        "less work",
-        "about the same",
-        "more work",
-        "sign test p",
-        "after Holm",
-        "one stopped",
-    ];
+/// Wins, ties and losses of each pair.
+pub(super) fn pairs(pairs: &[GrowthPair], what: &str) -> Section {
+    let (less, more) = (format!("less {what}"), format!("more {what}"));
+    let head = ["pair", &less, "about the same", &more, "sign test p", "after Holm", "one stopped"];
     let mut table = Table::new(&head, &[0]);
-    table.rows = growth
-        .pairs
+    table.rows = pairs
         .iter()
         .map(|pair| {
             vec![
@@ -147,17 +147,12 @@ fn fit(fit: &Fit) -> Vec<String> {
     vec![fit.rival.clone(), words, short(fit.at), short(fit.low), short(fit.high), percent(fit.r2)]
 }
 
-fn profile(growth: &Growth) -> Section {
-    let mut rivals: Vec<&str> = Vec::new();
-    for cell in &growth.cells {
-        if !rivals.contains(&cell.rival.as_str()) {
-            rivals.push(&cell.rival);
-        }
-    }
-    let head: Vec<&str> = std::iter::once("work within").chain(rivals.iter().copied()).collect();
+/// The performance profile of these rivals.
+pub(super) fn profile(shares: &[(f64, Vec<f64>)], rivals: &[&str], what: &str) -> Section {
+    let within = format!("{what} within");
+    let head: Vec<&str> = std::iter::once(within.as_str()).chain(rivals.iter().copied()).collect();
     let mut table = Table::new(&head, &[0]);
-    table.rows = growth
-        .profile
+    table.rows = shares
         .iter()
         .map(|(factor, shares)| {
             let head = format!("{} × the best", short(*factor));

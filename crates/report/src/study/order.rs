@@ -3,7 +3,7 @@
 use record::study::{Certificate, Order, OrderLevel, Relation};
 
 use super::{Section, Table, value};
-use crate::number::short;
+use crate::number::{of, short};
 
 pub(super) fn section(order: &Order) -> Section {
     let [a, b] = &order.rivals;
@@ -26,7 +26,21 @@ pub(super) fn section(order: &Order) -> Section {
 /// What was proved of the rows of `other` over this rival's relaxation.
 fn rows(certificate: &Certificate, other: &str) -> String {
     match certificate.holds {
+        Some(true) if !certificate.map.is_empty() => format!(
+            "all {} of {other}, with {} as an affine map",
+            certificate.rows,
+            of(certificate.map.len() as u64, "further variable")
+        ),
         Some(true) => format!("all {} of {other}", certificate.rows),
+        Some(false) if certificate.apart.is_some() => {
+            let (own, theirs) = certificate.apart.unwrap_or_default();
+            format!(
+                "not all of {other}: under {} the bound is {} here and {} with {other}",
+                certificate.witness,
+                short(own),
+                short(theirs)
+            )
+        }
         Some(false) => {
             let by = certificate
                 .violation

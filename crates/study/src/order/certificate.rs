@@ -4,10 +4,12 @@
 use std::collections::{BTreeMap, BTreeSet};
 
 use model::{ColumnId, Model, Number};
-use record::study::{Certificate, RowProof, SystemRow};
+use record::study::{Certificate, MappedColumn, RowProof, SystemRow};
 
+use super::affine::Map;
 use crate::claims::Claim;
 use crate::maximise::{Maximiser, Multipliers};
+use crate::subject::Subject;
 
 /// A value of less is 0.
 const ROUNDING: f64 = 1e-9;
@@ -22,10 +24,29 @@ fn side(side: Option<&Number>) -> String {
 
 /// The row that does not hold, and where.
 pub(super) fn witness(out: &mut Certificate, model: &Model, (claim, point): (&Claim, &[f64])) {
-    out.objective = by_column(model, &claim.entries);
+    witness_of(out, model, (&claim.entries, point));
+}
+
+/// The objective that tells two relaxations apart, and the point of the one.
+pub(super) fn witness_of(
+    out: &mut Certificate,
+    model: &Model,
+    (entries, point): (&[(ColumnId, Number)], &[f64]),
+) {
+    out.objective = by_column(model, entries);
     let values = point.iter().enumerate().filter(|(_, value)| value.abs() > ROUNDING);
     let name = |column: usize| model.column_name(ColumnId::from_index(column));
     out.point = values.map(|(column, &value)| (name(column), value)).collect();
+}
+
+/// What stands for the variables of the outer rival.
+pub(super) fn put_map(out: &mut Certificate, [inner, outer]: [&Subject; 2], map: &Map) {
+    let column = |(column, (constant, entries)): (&ColumnId, &(Number, Vec<_>))| MappedColumn {
+        column: outer.model.column_name(*column),
+        constant: constant.to_string(),
+        entries: by_column(&inner.model, entries),
+    };
+    out.map = map.iter().map(column).collect();
 }
 
 /// The proofs of all rows.

@@ -62,13 +62,8 @@ fn add(sum: &mut Point, by: Point) {
 }
 
 fn inside(value: f64) -> f64 {
-    if value < 0.0 {
-        0.0
-    } else if value > 1.0 {
-        1.0
-    } else {
-        value
-    }
+    let value = if value > 0.0 { value } else { 0.0 };
+    if value < 1.0 { value } else { 1.0 }
 }
 
 /// The vertices on a circle, each near those it is joined to.

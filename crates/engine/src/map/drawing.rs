@@ -140,7 +140,7 @@ impl Drawings {
     }
 
     fn drawing(&self, model: &Model, way: &Way, x: &[f64]) -> Drawing {
-        let name = |id: &VariableId| model.variables()[id.index()].name.clone();
+        let name = |id: &VariableId| name_of(model, *id).to_owned();
         match way {
             Way::Arcs(id) => Drawing {
                 name: format!("{} on the map", name(id)),
@@ -164,26 +164,10 @@ impl Drawings {
                     picture: Picture::Bars { periods: periods.clone(), series: series.collect() },
                 }
             }
-            Way::Chart(chart) => Drawing {
-                name: format!("{} as a chart over time", name(&chart.variable())),
-                picture: chart.picture(model, x),
-            },
-            Way::Pulse(pulse) => Drawing {
-                name: format!("{} as a chart over time", name(&pulse.variable())),
-                picture: pulse.picture(model, x),
-            },
-            Way::Loads(loads) => Drawing {
-                name: format!(
-                    "{} as lengths in ({})",
-                    name(&loads.variable()),
-                    model.families()[loads.family.index()].name
-                ),
-                picture: loads.picture(model, x),
-            },
-            Way::Graph(graph) => Drawing {
-                name: format!("{} {}", name(&graph.variable()), graph.stands()),
-                picture: graph.picture(model, x),
-            },
+            Way::Chart(chart) => chart.drawing(model, x),
+            Way::Pulse(pulse) => pulse.drawing(model, x),
+            Way::Loads(loads) => loads.drawing(model, x),
+            Way::Graph(graph) => graph.drawing(model, x),
             Way::Grid(id, rows, columns) => Drawing {
                 name: format!("{} as a grid", name(id)),
                 picture: cells(model, *id, (rows, columns), x),
@@ -229,6 +213,10 @@ impl Drawings {
         });
         arcs.collect()
     }
+}
+
+fn name_of(model: &Model, id: VariableId) -> &str {
+    &model.variables()[id.index()].name
 }
 
 /// What suits best comes first.

@@ -4,9 +4,9 @@
 use std::collections::{BTreeMap, BTreeSet};
 
 use model::{ColumnId, LabelId, Model, RowId, VariableId};
-use record::message::{Arc, Picture, Vertex};
+use record::message::{Arc, Drawing, Picture, Vertex};
 
-use super::{ZERO, values};
+use super::{ZERO, name_of, values};
 
 /// Vertices drawn at most.
 const VERTICES: usize = 80;
@@ -103,13 +103,15 @@ impl Graph {
         }
     }
 
-    /// Where its values stand.
-    pub(super) fn stands(&self) -> &'static str {
-        if self.over == Over::Pairs { "on the graph" } else { "at the nodes of the graph" }
+    /// The graph of a point.
+    pub(super) fn drawing(&self, model: &Model, x: &[f64]) -> Drawing {
+        let stands =
+            if self.over == Over::Pairs { "on the graph" } else { "at the nodes of the graph" };
+        let name = format!("{} {stands}", name_of(model, self.variable));
+        Drawing { name, picture: self.picture(model, x) }
     }
 
-    /// The graph of a point.
-    pub(super) fn picture(&self, model: &Model, x: &[f64]) -> Picture {
+    fn picture(&self, model: &Model, x: &[f64]) -> Picture {
         let mut vertices: Vec<Vertex> = self
             .vertices
             .iter()
@@ -145,11 +147,6 @@ impl Graph {
         let crowded = self.over == Over::Pairs && self.is_dense();
         let edges = if crowded { Vec::new() } else { self.edges.clone() };
         Picture::Graph { vertices, edges, arcs }
-    }
-
-    /// The variable that is drawn.
-    pub(super) const fn variable(&self) -> VariableId {
-        self.variable
     }
 }
 

@@ -8,9 +8,9 @@
 use std::collections::{BTreeMap, BTreeSet};
 
 use model::{ColumnId, FamilyId, LabelId, Model, RowId, VariableId};
-use record::message::{Part, Picture, Strip};
+use record::message::{Drawing, Part, Picture, Strip};
 
-use super::{ZERO, values};
+use super::{ZERO, name_of, values};
 
 /// Strips drawn at most, and parts in all of them.
 const STRIPS: usize = 80;
@@ -62,19 +62,14 @@ impl Chart {
     }
 
     /// The chart of a point.
-    pub(super) fn picture(&self, model: &Model, x: &[f64]) -> Picture {
+    pub(super) fn drawing(&self, model: &Model, x: &[f64]) -> Drawing {
         let mut strips = Stacked::default();
         for (column, from) in values(model, self.variable, x) {
             let to = from + self.lasts.get(&column).copied().unwrap_or_default();
             let part = Part { name: String::new(), from, to, value: 1.0, column: column.0 };
-            strips.add(model, model.column_tuple(column), self.lane, part);
+            strips.add(model, model.column_tuple(column), self.lane, &part);
         }
-        strips.picture()
-    }
-
-    /// The variable that is drawn.
-    pub(super) const fn variable(&self) -> VariableId {
-        self.variable
+        strips.drawing(name_of(model, self.variable))
     }
 }
 
@@ -87,7 +82,7 @@ struct Stacked {
 
 impl Stacked {
     /// Puts a part into the strip of one of its labels, or into one of its own, and names both.
-    fn add(&mut self, model: &Model, tuple: &[LabelId], lane: Option<usize>, part: Part) {
+    fn add(&mut self, model: &Model, tuple: &[LabelId], lane: Option<usize>, part: &Part) {
         let label = |label: &LabelId| model.labels().name(*label).to_owned();
         let named: Vec<LabelId> = match lane {
             Some(place) => tuple.get(place).copied().into_iter().collect(),
@@ -101,12 +96,13 @@ impl Stacked {
         });
         let rest = tuple.iter().enumerate().filter(|(place, _)| Some(*place) != lane);
         let rest: Vec<String> = rest.map(|(_, of)| label(of)).collect();
-        self.strips[place].parts.push(Part { name: rest.join(", "), ..part });
+        self.strips[place].parts.push(Part { name: rest.join(", "), ..part.clone() });
     }
 
-    fn picture(mut self) -> Picture {
+    fn drawing(mut self, variable: &str) -> Drawing {
         self.strips.truncate(STRIPS);
-        Picture::Strips { strips: self.strips, time: true }
+        let name = format!("{variable} as a chart over time");
+        Drawing { name, picture: Picture::Strips { strips: self.strips, time: true } }
     }
 }
 
@@ -183,7 +179,7 @@ impl Pulse {
     }
 
     /// The chart of a point.
-    pub(super) fn picture(&self, model: &Model, x: &[f64]) -> Picture {
+    pub(super) fn drawing(&self, model: &Model, x: &[f64]) -> Drawing {
         let mut strips = Stacked::default();
         for (column, value) in values(model, self.variable, x).filter(|(_, value)| *value > ZERO) {
             let tuple = model.column_tuple(column);
@@ -193,14 +189,9 @@ impl Pulse {
             let from = from as f64;
             let to = from + self.lasts.get(work(tuple)).copied().unwrap_or(1.0);
             let part = Part { name: String::new(), from, to, value, column: column.0 };
-            strips.add(model, work(tuple), self.lane, part);
+            strips.add(model, work(tuple), self.lane, &part);
         }
-        strips.picture()
-    }
-
-    /// The variable that is drawn.
-    pub(super) const fn variable(&self) -> VariableId {
-        self.variable
+        strips.drawing(name_of(model, self.variable))
     }
 }
 
@@ -262,7 +253,7 @@ fn lane_of(model: &Model, variable: VariableId, rows: &[RowId]) -> Option<usize>
 pub(super) struct Loads {
     variable: VariableId,
     /// The family whose rows are the rooms.
-    pub(super) family: FamilyId,
+    family: FamilyId,
 }
 
 impl Loads {
@@ -288,11 +279,13 @@ impl Loads {
     }
 
     /// What lies in each room at a point; rooms without anything and without an end are left out.
-    pub(super) fn picture(&self, model: &Model, x: &[f64]) -> Picture {
+    pub(super) fn drawing(&self, model: &Model, x: &[f64]) -> Drawing {
+        let family = &model.families()[self.family.index()].name;
+        let name = format!("{} as lengths in ({family})", name_of(model, self.variable));
         let rows = model.families()[self.family.index()].rows.clone().map(RowId);
         let strips = rows.map(|row| self.strip(model, row, x));
         let strips = strips.filter(|strip| !strip.parts.is_empty() || strip.limit > Some(ZERO));
-        Picture::Strips { strips: strips.collect(), time: false }
+        Drawing { name, picture: Picture::Strips { strips: strips.collect(), time: false } }
     }
 
     fn strip(&self, model: &Model, row: RowId, x: &[f64]) -> Strip {
@@ -316,11 +309,6 @@ impl Loads {
         }
         let names: Vec<String> = named.iter().map(label).collect();
         Strip { name: names.join(", "), limit: Some(limit), parts }
-    }
-
-    /// The variable that is drawn.
-    pub(super) const fn variable(&self) -> VariableId {
-        self.variable
     }
 }
 

@@ -6,7 +6,7 @@ use report::spring;
 use yew::prelude::*;
 
 use crate::state::pointer::Shared;
-use crate::view::map::Map;
+use crate::view::map::{Map, is_fractional};
 
 #[derive(Properties, PartialEq)]
 pub(crate) struct GraphProps {
@@ -61,7 +61,7 @@ fn values(vertices: &[Vertex]) -> (Written, Option<Shared<Vec<f64>>>) {
     let known: Vec<(u32, f64)> = known.collect();
     let fills = known.len() == vertices.len() && !vertices.is_empty();
     let fills = fills.then(|| Shared::new(known.iter().map(|&(_, value)| value).collect()));
-    let written = known.into_iter().filter(|(_, value)| (value - value.round()).abs() > 1e-6);
+    let written = known.into_iter().filter(|(_, value)| is_fractional(*value));
     (Shared::new(written.collect()), fills)
 }
 

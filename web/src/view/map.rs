@@ -224,7 +224,7 @@ fn curve(arc: &Arc, stops: &[Point]) -> Option<Curve> {
 }
 
 /// Whether a value differs from a whole number by more than the tolerance of the search.
-fn is_fractional(value: f64) -> bool {
+pub(crate) fn is_fractional(value: f64) -> bool {
     (value - value.round()).abs() > 1e-6
 }
 

@@ -111,13 +111,18 @@ fn caption(picture: &Picture) -> &'static str {
         }
         Picture::Bars { .. } => "Each variable on a scale of its own.",
         Picture::Strips { time: true, .. } => {
-            "A length is how long the work takes; in a relaxation lengths may lie over one another."
+            "A length is how long the work takes; dashed where fractional. In a relaxation lengths may \
+             lie over one another."
         }
         Picture::Strips { .. } => {
             "A length is weight times value; the stroke is the room there is."
         }
         Picture::Graph { arcs, .. } if !arcs.is_empty() => {
             "Width is the value; dashed where fractional."
+        }
+        Picture::Graph { vertices, .. } if vertices.iter().any(|at| !at.class.is_empty()) => {
+            "In brackets the class with the greatest value; full is 1, half in between; thin lines \
+             join what a row holds together."
         }
         Picture::Graph { .. } => {
             "Full is 1, a ring is 0, half in between; thin lines join what a row holds together."

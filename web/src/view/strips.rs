@@ -8,7 +8,7 @@ use yew::prelude::*;
 
 use crate::browser::size::use_width;
 use crate::state::pointer::Shared;
-use crate::view::map::px;
+use crate::view::map::{is_fractional, px};
 
 /// Height of a strip, of what lies in it, and of the line of figures, in pixels.
 const STRIP: f64 = 30.0;
@@ -96,7 +96,7 @@ fn strip_of(strip: &Strip, time: bool, (top, scale): (f64, &Scale), column: Opti
                 { shortened(&strip.name, letters) }
                 <title>{ strip.name.clone() }</title>
             </text>
-            for part in strip.parts.iter() { { length(part, time, (top, scale), column) } }
+            for part in strip.parts.iter() { { length(part, &words(part, strip, time), (top, scale), column) } }
             if let Some(limit) = strip.limit {
                 <line class="limit" x1={px(scale.at(limit))} y1={px(top + 1.0)} x2={px(scale.at(limit))} y2={px(top + STRIP - 3.0)}>
                     <title>{ format!("room for {}", full(limit)) }</title>
@@ -106,38 +106,45 @@ fn strip_of(strip: &Strip, time: bool, (top, scale): (f64, &Scale), column: Opti
     }
 }
 
-fn length(part: &Part, time: bool, (top, scale): (f64, &Scale), column: Option<u32>) -> Html {
+fn length(
+    part: &Part,
+    [name, title]: &[String; 2],
+    (top, scale): (f64, &Scale),
+    column: Option<u32>,
+) -> Html {
     let (from, width) = (scale.at(part.from), (part.to - part.from) * scale.step);
-    let fractional = (part.value - part.value.round()).abs() > 1e-6;
     let class = classes!(
-        (fractional && !time).then_some("fractional"),
+        is_fractional(part.value).then_some("fractional"),
         (column == Some(part.column)).then_some("chosen")
     );
     let room = ((width - 6.0) / LETTER).floor();
-    let name = if time || part.value == 1.0 {
-        part.name.clone()
-    } else {
-        format!("{} × {}", part.name, short(part.value))
-    };
-    let name = if room >= 1.0 { shortened(&name, room as usize) } else { String::new() };
+    let name = if room >= 1.0 { shortened(name, room as usize) } else { String::new() };
     html! {
         <g {class}>
             <rect x={px(from)} y={px(top + 3.0)} width={px(width)} height={px(PART)}>
-                <title>{ told(part, time) }</title>
+                <title>{ title.clone() }</title>
             </rect>
             <text class="name" x={px(from + 4.0)} y={px(top + 17.0)}>{ name }</text>
         </g>
     }
 }
 
-fn told(part: &Part, time: bool) -> String {
-    let (from, to) = (full(part.from), full(part.to));
-    if time {
-        format!("{}: {from} to {to}", part.name)
+/// What stands in a part, and its title in full.
+fn words(part: &Part, strip: &Strip, time: bool) -> [String; 2] {
+    let whole = part.value == 1.0;
+    let times = if whole { String::new() } else { format!(" × {}", short(part.value)) };
+    let inside = match (part.name == strip.name, whole) {
+        (true, true) => String::new(),
+        (true, false) => short(part.value),
+        _ => format!("{}{times}", part.name),
+    };
+    let (from, to, length) = (full(part.from), full(part.to), full(part.to - part.from));
+    let title = if time {
+        format!("{}: {from} to {to}{times}", part.name)
     } else {
-        let length = full(part.to - part.from);
-        format!("{}: {length}, of a value of {}", part.name, full(part.value))
-    }
+        format!("{}{times}: {length}", part.name)
+    };
+    [inside, title]
 }
 
 /// A name in so many letters: cut short where it is longer, left out where nothing of it is left.
@@ -161,6 +168,22 @@ mod tests {
         assert_eq!(shortened("oven", 4), "oven");
         assert_eq!(shortened("large oven", 6), "large…");
         assert_eq!(shortened("oven", 2), "");
+    }
+
+    #[test]
+    fn a_part_says_what_its_strip_does_not() {
+        let part = |name: &str, value| Part {
+            name: name.to_owned(),
+            from: 2.0,
+            to: 5.0,
+            value,
+            column: 0,
+        };
+        let strip = Strip { name: "dig".to_owned(), limit: None, parts: Vec::new() };
+        let said = |part: &Part, time| words(part, &strip, time);
+        assert_eq!(said(&part("dig", 1.0), true), ["", "dig: 2 to 5"]);
+        assert_eq!(said(&part("dig", 0.25), true), ["0.25", "dig: 2 to 5 × 0.25"]);
+        assert_eq!(said(&part("beam", 2.0), false), ["beam × 2", "beam × 2: 3"]);
     }
 
     #[test]

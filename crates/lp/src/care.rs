@@ -24,9 +24,6 @@ pub(crate) struct Care {
     pub(crate) room: f64,
     /// Whether solves are refined.
     pub(crate) refines: bool,
-    /// Whether a row may be violated, or a ray leave it, by what the tolerance of a column times its
-    /// coefficient makes, not only by what the terms of the row make.
-    pub(crate) forgives: bool,
     /// Whether the sides of the rows are moved apart by half of what a row may be violated by, which
     /// makes rows that hold up to rounding only, or repeat each other so, a region with an inside.
     pub(crate) widens: bool,
@@ -42,7 +39,6 @@ const FAST: Care = Care {
     entry: 1e-9,
     room: 1.0,
     refines: false,
-    forgives: false,
     widens: false,
     detour: 0,
 };
@@ -50,15 +46,15 @@ const FAST: Care = Care {
 /// The attempts from the slack basis.
 const WARY: Care = Care { threshold: 0.5, singular: 1e-9, pivot: 1e-7, refines: true, ..FAST };
 
-/// What stands within the tolerances of its columns is released.
-const LENIENT: Care = Care { threshold: 0.9, entry: 1e-8, forgives: true, ..WARY };
+/// Pivots near the largest alone.
+const CHOOSY: Care = Care { threshold: 0.9, entry: 1e-8, ..WARY };
 
 /// The same with rows of some width.
-const WIDE: Care = Care { widens: true, ..LENIENT };
+const WIDE: Care = Care { widens: true, ..CHOOSY };
 
 /// Small entries may be pivots: what they keep from being without bounds is small beside the rest of
 /// a column alone.
-const DARING: Care = Care { threshold: 0.3, entry: 1e-12, refines: true, forgives: true, ..FAST };
+const DARING: Care = Care { threshold: 0.3, entry: 1e-12, refines: true, ..FAST };
 
 /// The attempts in turn. Two have tight tolerances, for points that are feasible within the usual
 /// ones and are not once they are put within their bounds: large coefficients multiply the
@@ -68,10 +64,10 @@ pub(crate) const ATTEMPTS: [Care; 14] = [
     Care { threshold: 0.3, entry: 1e-12, refines: true, ..FAST },
     Care { threshold: 0.3, entry: 1e-12, room: 1e-3, refines: true, ..FAST },
     Care { room: 1e-3, ..WARY },
-    LENIENT,
-    Care { room: 100.0, ..LENIENT },
+    CHOOSY,
+    Care { room: 100.0, ..CHOOSY },
     Care { detour: 1, ..WIDE },
-    Care { detour: 2, ..LENIENT },
+    Care { detour: 2, ..CHOOSY },
     Care { detour: 3, room: 1e-3, ..WIDE },
     Care { detour: 4, ..DARING },
     Care { detour: 5, widens: true, ..DARING },

@@ -73,3 +73,47 @@ impl Core {
         Ok(())
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::problem::Problem;
+
+    /// x + y ≥ 3, x ≤ y, 0 ≤ x ≤ 2, 0 ≤ y, with its slack basis.
+    fn sound() -> Core {
+        let mut problem = Problem::new();
+        let x = problem.add_column(1.0, 0.0, 2.0).unwrap();
+        let y = problem.add_column(2.0, 0.0, f64::INFINITY).unwrap();
+        problem.add_row(&[(x, 1.0), (y, 1.0)], 3.0, f64::INFINITY).unwrap();
+        problem.add_row(&[(x, 1.0), (y, -1.0)], f64::NEG_INFINITY, 0.0).unwrap();
+        let mut core = Core::new(problem);
+        core.refactor_canonical();
+        core.compute_basic();
+        core
+    }
+
+    /// What `check` says once `harm` was done.
+    fn complaint(harm: fn(&mut Core)) -> String {
+        let mut core = sound();
+        assert_eq!(core.check(), Ok(()));
+        harm(&mut core);
+        core.check().unwrap_err()
+    }
+
+    #[test]
+    fn each_broken_invariant_is_named() {
+        let harms: [(fn(&mut Core), &str); 7] = [
+            (|core| core.work_cost.push(0.0), "an array of another length"),
+            (|core| core.weight.push(1.0), "2 rows, but"),
+            (|core| core.status[0] = Status::Basic, "head and statuses disagree"),
+            (|core| core.head[0] = 0, "head and statuses disagree"),
+            (|core| core.status[1] = Status::Upper, "variable 1 stands at a bound"),
+            (|core| core.is_listed.fill(false), "the list of violated positions"),
+            (|core| core.head.swap(0, 1), "the canonical head is not sorted"),
+        ];
+        for (harm, words) in harms {
+            let said = complaint(harm);
+            assert!(said.contains(words), "{said:?} where {words:?} was meant");
+        }
+    }
+}

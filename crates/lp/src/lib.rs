@@ -36,6 +36,7 @@ mod checkpoint;
 mod compute;
 mod condition;
 mod dual;
+mod extended;
 mod lu;
 mod machine;
 mod outcome;

@@ -9,6 +9,7 @@
 
 use crate::care::{ATTEMPTS, begins_from_slack};
 use crate::dual::{self, DualState, DualStep};
+use crate::extended::{Extended, ExtendedStep};
 use crate::outcome::{Outcome, Ray, StopReason};
 use crate::primal::{self, PrimalState, PrimalStep};
 use crate::simplex::Limits;
@@ -34,6 +35,7 @@ enum Phase {
     Evaluate,
     Dual,
     Primal,
+    Extended,
     #[default]
     Finished,
 }
@@ -45,6 +47,9 @@ pub(crate) struct Machine {
     limits: Limits,
     dual: DualState,
     primal: PrimalState,
+    extended: Option<Box<Extended>>,
+    /// Why the last attempt ended.
+    distrust: String,
     /// What the last solve ended with.
     pub(crate) outcome: Option<Outcome>,
     round: u32,
@@ -73,10 +78,12 @@ impl Machine {
     /// Drops the outcome, and a solve under way.
     pub(crate) fn forget(&mut self) {
         self.outcome = None;
+        self.extended = None;
         self.phase = Phase::Finished;
     }
 
     fn finish(&mut self, outcome: Outcome) {
+        self.extended = None;
         self.outcome = Some(outcome);
         self.phase = Phase::Finished;
     }
@@ -88,6 +95,7 @@ impl Machine {
             Phase::Evaluate => self.evaluate(core),
             Phase::Dual => self.step_dual(core),
             Phase::Primal => self.step_primal(core),
+            Phase::Extended => self.step_extended(core),
             Phase::Finished => {}
         }
     }
@@ -116,7 +124,7 @@ impl Machine {
     fn fall_back(&mut self, core: &mut Core, reason: String) {
         self.attempt += 1;
         if self.attempt >= ATTEMPTS.len() {
-            self.stop(core, StopReason::Numerical(reason));
+            self.begin_extended(core, reason);
             return;
         }
         if begins_from_slack(self.attempt) {
@@ -125,6 +133,32 @@ impl Machine {
             core.reset_to_slack_basis(ATTEMPTS[self.attempt].detour);
         }
         self.begin_attempt(core);
+    }
+
+    /// The last resort, where the problem is small enough; `reason` is why nothing else is left.
+    fn begin_extended(&mut self, core: &mut Core, reason: String) {
+        self.extended = Extended::begin(core);
+        if self.extended.is_none() {
+            self.stop(core, StopReason::Numerical(reason));
+            return;
+        }
+        self.distrust = reason;
+        self.phase = Phase::Extended;
+    }
+
+    fn step_extended(&mut self, core: &mut Core) {
+        if self.is_at_limit(core) {
+            return;
+        }
+        let step = self.extended.as_mut().map(|extended| extended.step(core));
+        match step {
+            Some(ExtendedStep::Moved) => {}
+            Some(ExtendedStep::Released(outcome)) => self.finish(outcome),
+            Some(ExtendedStep::Exhausted) | None => {
+                let reason = std::mem::take(&mut self.distrust);
+                self.stop(core, StopReason::Numerical(reason));
+            }
+        }
     }
 
     /// Fresh factors, given costs and bounds: decides what the basis is and what comes next.
@@ -178,11 +212,20 @@ impl Machine {
         }
     }
 
-    /// Stops at a limit; true when it did.
+    /// Stops at the limit on iterations; true when it did.
+    fn is_at_limit(&mut self, core: &mut Core) -> bool {
+        let done = core.iterations - self.began;
+        let is_over = self.limits.iterations.is_some_and(|limit| done >= limit);
+        if is_over {
+            self.stop(core, StopReason::Iterations);
+        }
+        is_over
+    }
+
+    /// Stops at the limit on iterations, or ends an attempt that takes too many; true when it did.
     fn stops(&mut self, core: &mut Core) -> bool {
         let iterations = core.iterations;
-        if self.limits.iterations.is_some_and(|limit| iterations - self.began >= limit) {
-            self.stop(core, StopReason::Iterations);
+        if self.is_at_limit(core) {
             return true;
         }
         let size = core.variables() as u64;

@@ -175,9 +175,7 @@ impl Core {
                 (true, false) => Status::Lower,
             };
         }
-        self.settle_statuses();
-        self.head.clear();
-        self.sort_head();
+        self.adopt_statuses();
     }
 
     /// Sets each working cost and bound to the given one.
@@ -191,18 +189,35 @@ impl Core {
         }
     }
 
-    /// Moves the working sides of each row apart, as far as the check of a point that forgives lets
-    /// a row be violated by half.
+    /// Moves the working sides of each row apart by half of what the row may be violated by, at values
+    /// of about 1.
     fn widen_rows(&mut self) {
         let n = self.columns();
         for i in 0..self.rows() {
-            let unit = self.unit[n + i];
-            let one = if unit > 1.0 { 1.0 / unit } else { 1.0 };
-            let size = largest(self.matrix.row(i).map(|(_, value)| value));
-            let width = 0.5 * VERIFY_ROW * (one + size);
+            let width = 0.5 * VERIFY_ROW * self.row_size(i);
             self.work_lower[n + i] -= width;
             self.work_upper[n + i] += width;
         }
+    }
+
+    /// What a tolerance of a row is relative to at values of about 1: its largest entry, plus 1 in the
+    /// caller's or in scaled units, whichever is less.
+    pub(crate) fn row_size(&self, i: usize) -> f64 {
+        self.row_one(i) + largest(self.matrix.row(i).map(|(_, value)| value))
+    }
+
+    /// 1 in the caller's or in scaled units of a row, whichever is less.
+    pub(crate) fn row_one(&self, i: usize) -> f64 {
+        let unit = self.unit[self.columns() + i];
+        if unit > 1.0 { 1.0 / unit } else { 1.0 }
+    }
+
+    /// The statuses as they stand become the basis, of the given costs and bounds.
+    pub(crate) fn adopt_statuses(&mut self) {
+        self.restore_given();
+        self.settle_statuses();
+        self.head.clear();
+        self.sort_head();
     }
 
     /// Moves every nonbasic status to a bound that exists (working bounds); fixed variables count

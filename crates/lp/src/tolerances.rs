@@ -82,8 +82,8 @@ pub(crate) const VERIFY_ROW: f64 = 2e-9;
 /// Wrong-signed reduced cost of released duals; relative to 1 + the largest |y a| of the column.
 pub(crate) const VERIFY_DUAL: f64 = 2e-9;
 
-/// Difference of primal and dual objective of a released optimum; relative to 1 + the sum of the
-/// terms' sizes.
+/// Difference of primal and dual objective of a released optimum; relative to 1 + the sum of the sizes
+/// of the objective's terms. Those of the dual bound do not count: multipliers may be 10¹² times them.
 pub(crate) const VERIFY_GAP: f64 = 1e-8;
 
 /// Noise in a column of a released ray, taken for zero; relative to the sum of the terms' sizes.

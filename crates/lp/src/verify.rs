@@ -24,24 +24,37 @@ const ROUNDING: f64 = 1e-14;
 struct DualBound {
     value: f64,
     size: f64,
+    /// The same with what each d is the difference of in the place of d: what rounding is relative to.
+    rounded: f64,
     /// False when a term that is −∞ was taken for noise.
     is_whole: bool,
 }
 
+/// A reduced cost or a multiplier, the sum of the sizes that it is the difference of, and what of it is
+/// noise.
+#[derive(Clone, Copy, Debug)]
+struct Price {
+    value: f64,
+    size: f64,
+    noise: f64,
+}
+
 impl DualBound {
     /// Adds min(d l, d u); false when that is −∞ and d is more than noise.
-    fn add(&mut self, d: f64, (lower, upper): (f64, f64), noise: f64) -> bool {
+    fn add(&mut self, price: Price, (lower, upper): (f64, f64)) -> bool {
+        let d = price.value;
         let bound = if d > 0.0 { lower } else { upper };
-        if d == 0.0 {
-            return true;
-        }
         if bound.is_finite() {
             self.value += d * bound;
             self.size += (d * bound).abs();
+            self.rounded += price.size * bound.abs();
+            return true;
+        }
+        if d == 0.0 {
             return true;
         }
         self.is_whole = false;
-        d.abs() <= noise
+        d.abs() <= price.noise
     }
 }
 
@@ -69,9 +82,10 @@ impl Core {
     /// b(y), or none when a term is −∞ by more than `noise` times the size of its column.
     fn dual_value(&self, y: &[f64], with_costs: bool, noise: f64) -> Option<DualBound> {
         let n = self.columns();
-        let mut bound = DualBound { value: 0.0, size: 0.0, is_whole: true };
-        for (i, &multiplier) in y.iter().enumerate() {
-            if !bound.add(multiplier, (self.lower[n + i], self.upper[n + i]), noise) {
+        let mut bound = DualBound { value: 0.0, size: 0.0, rounded: 0.0, is_whole: true };
+        for (i, &value) in y.iter().enumerate() {
+            let price = Price { value, size: value.abs(), noise };
+            if !bound.add(price, (self.lower[n + i], self.upper[n + i])) {
                 return None;
             }
         }
@@ -83,8 +97,8 @@ impl Core {
                 d -= term;
                 size += term.abs();
             }
-            let room = if with_costs { noise * (1.0 + size) } else { noise * size };
-            if !bound.add(d, (self.lower[j], self.upper[j]), room) {
+            let noise = if with_costs { noise * (1.0 + size) } else { noise * size };
+            if !bound.add(Price { value: d, size, noise }, (self.lower[j], self.upper[j])) {
                 return None;
             }
         }
@@ -94,28 +108,37 @@ impl Core {
     /// The bound that multipliers give on the optimal value, less what rounding may have added; noise
     /// against missing bounds is forgiven.
     pub(crate) fn dual_bound(&self, y: &[f64]) -> Option<f64> {
-        self.dual_value(y, true, VERIFY_DUAL).map(|bound| bound.value - ROUNDING * bound.size)
+        self.dual_value(y, true, VERIFY_DUAL).map(|bound| bound.value - ROUNDING * bound.rounded)
     }
 
     /// The multipliers `sign` · `scratch.rho` as a ray in the caller's units, if they prove
     /// infeasibility.
     pub(crate) fn farkas_ray(&self, sign: f64) -> Option<Ray> {
-        let n = self.columns();
         let rho = &self.scratch.rho;
-        let noise = VERIFY_RAY * rho.largest();
-        let mut multipliers = vec![0.0; self.rows()];
-        for (row, value) in rho.iter() {
+        self.checked_farkas(rho.largest(), rho.iter().map(|(row, value)| (row, sign * value)))
+    }
+
+    /// Multipliers by row, the largest of this size, as a ray in the caller's units, if they prove
+    /// infeasibility.
+    pub(crate) fn checked_farkas(
+        &self,
+        largest: f64,
+        multipliers: impl Iterator<Item = (u32, f64)>,
+    ) -> Option<Ray> {
+        let n = self.columns();
+        let noise = VERIFY_RAY * largest;
+        let mut whole = vec![0.0; self.rows()];
+        for (row, y) in multipliers {
             let i = row as usize;
-            let y = sign * value;
             let side = if y > 0.0 { self.lower[n + i] } else { self.upper[n + i] };
             if y.abs() > if side.is_infinite() { noise } else { 1e-3 * noise } {
-                multipliers[i] = y / self.unit[n + i];
+                whole[i] = y / self.unit[n + i];
             }
         }
-        make_whole(&mut multipliers);
+        make_whole(&mut whole);
         let scaled: Vec<f64> =
-            multipliers.iter().zip(&self.unit[n..]).map(|(y, unit)| y * unit).collect();
-        self.proves_infeasible(&scaled).then_some(Ray { multipliers })
+            whole.iter().zip(&self.unit[n..]).map(|(y, unit)| y * unit).collect();
+        self.proves_infeasible(&scaled).then_some(Ray { multipliers: whole })
     }
 
     /// True when the multipliers prove that there is no feasible point.
@@ -143,14 +166,12 @@ impl Core {
         x
     }
 
-    /// Row activities at a point, and the size of the largest term of each (of a term for a unit more
-    /// where the attempt forgives).
+    /// Row activities at a point, and the size of the largest term of each.
     fn activities(&self, x: &[f64]) -> Vec<(f64, f64)> {
         let row = |i: usize| {
             self.matrix.row(i).fold((0.0, 0.0), |(sum, size): (f64, f64), (j, value)| {
                 let term = value * x[j as usize];
-                let own = if self.care.forgives { value.abs() + term.abs() } else { term.abs() };
-                (sum + term, if own > size { own } else { size })
+                (sum + term, if term.abs() > size { term.abs() } else { size })
             })
         };
         (0..self.rows()).map(row).collect()
@@ -166,9 +187,7 @@ impl Core {
         }
         let activities = self.activities(x);
         for (i, &(activity, size)) in activities.iter().enumerate() {
-            let unit = self.unit[n + i];
-            let one = if unit > 1.0 { 1.0 / unit } else { 1.0 };
-            let room = VERIFY_ROW * (one + size);
+            let room = VERIFY_ROW * (self.row_one(i) + size);
             if activity.is_nan()
                 || activity < self.lower[n + i] - room
                 || activity > self.upper[n + i] + room
@@ -180,27 +199,36 @@ impl Core {
     }
 
     /// The solution of the current basis (given costs and bounds), checked, in the caller's units.
-    /// The objective is the same in both.
     pub(crate) fn solution(&self) -> Result<Solution, String> {
-        let n = self.columns();
         let x = self.point();
-        let activity = self.check_point(&x)?;
-        let duals = self.reduced[n..].to_vec();
-        let objective: f64 = x.iter().zip(&self.cost).map(|(x, cost)| x * cost).sum();
-        let size: f64 = x.iter().zip(&self.cost).map(|(x, cost)| (x * cost).abs()).sum();
-        let Some(bound) = self.dual_value(&duals, true, VERIFY_DUAL) else {
+        let released = self.released_solution(&x, &self.reduced)?;
+        let Some(bound) = self.dual_value(&self.reduced[self.columns()..], true, VERIFY_DUAL)
+        else {
             return Err("a reduced cost has the wrong sign".to_owned());
         };
-        let gap = objective - bound.value;
-        if gap.is_nan() || gap.abs() > VERIFY_GAP * (1.0 + size + bound.size) {
+        let size: f64 = x.iter().zip(&self.cost).map(|(x, cost)| (x * cost).abs()).sum();
+        // What rounding of the multipliers explains is let be where there is no last resort.
+        let rounding = if self.is_small() { 0.0 } else { ROUNDING * bound.rounded };
+        let gap = released.objective - bound.value;
+        if gap.is_nan() || gap.abs() > VERIFY_GAP * (1.0 + size) + rounding {
             return Err("primal and dual objective differ".to_owned());
         }
+        Ok(released)
+    }
+
+    /// A point, checked against its bounds and rows, and reduced costs (the duals last) as a solution in
+    /// the caller's units. The objective is the same in both.
+    pub(crate) fn released_solution(&self, x: &[f64], reduced: &[f64]) -> Result<Solution, String> {
+        let (reduced, duals) = reduced.split_at(self.columns());
+        let activity = self.check_point(x)?;
+        let objective: f64 = x.iter().zip(&self.cost).map(|(x, cost)| x * cost).sum();
+        let rows = &self.unit[self.columns()..];
         Ok(Solution {
             objective: objective + 0.0,
-            activity: released(&activity, &self.unit[n..], |activity, unit| activity * unit),
-            duals: self.released_duals(&duals),
-            reduced_costs: released(&self.reduced[..n], &self.unit, |d, unit| d / unit),
-            x: self.released_point(&x),
+            activity: released(&activity, rows, |activity, unit| activity * unit),
+            duals: self.released_duals(duals),
+            reduced_costs: released(reduced, &self.unit, |d, unit| d / unit),
+            x: self.released_point(x),
         })
     }
 
@@ -236,10 +264,6 @@ impl Core {
                 ray[j] = -direction * alpha;
             }
         }
-        let largest = largest(ray.iter().copied());
-        if largest > 0.0 {
-            ray.iter_mut().for_each(|value| *value /= largest);
-        }
         ray
     }
 
@@ -249,25 +273,34 @@ impl Core {
         entering: u32,
         direction: f64,
     ) -> Result<(Vec<f64>, Vec<f64>), String> {
+        self.checked_unbounded(&self.point(), self.direction(entering, direction), 0.0)
+    }
+
+    /// A feasible point and a direction, which is scaled so that the fastest column moves by 1, checked
+    /// and in the caller's units. A row may be left by the rounding of its own terms, and by `room`.
+    pub(crate) fn checked_unbounded(
+        &self,
+        point: &[f64],
+        mut ray: Vec<f64>,
+        room: f64,
+    ) -> Result<(Vec<f64>, Vec<f64>), String> {
         let n = self.columns();
-        let point = self.point();
-        self.check_point(&point)?;
-        let ray = self.direction(entering, direction);
-        let recedes = |value: f64, size: f64, j: usize| {
-            let room = VERIFY_RAY * size;
+        self.check_point(point)?;
+        let largest = largest(ray.iter().copied());
+        if largest > 0.0 {
+            ray.iter_mut().for_each(|value| *value /= largest);
+        }
+        let recedes = |value: f64, room: f64, j: usize| {
             (value >= -room || self.lower[j].is_infinite())
                 && (value <= room || self.upper[j].is_infinite())
         };
-        let size = if self.care.forgives { 10.0 } else { 1.0 };
-        let columns = (0..n).all(|j| recedes(ray[j], size, j));
-        let rows = self
-            .activities(&ray)
-            .iter()
-            .enumerate()
-            .all(|(i, &(value, size))| recedes(value, 10.0 * size, n + i));
+        let columns = (0..n).all(|j| recedes(ray[j], VERIFY_RAY, j));
+        let rows = self.activities(&ray).iter().enumerate().all(|(i, &(value, size))| {
+            recedes(value, 10.0 * VERIFY_RAY * size + room * self.row_one(i), n + i)
+        });
         let slope: f64 = ray.iter().zip(&self.cost).map(|(ray, cost)| ray * cost).sum();
         if columns && rows && slope < 0.0 {
-            Ok((self.released_point(&point), self.released_point(&ray)))
+            Ok((self.released_point(point), self.released_point(&ray)))
         } else {
             Err("the unbounded ray leaves the feasible set".to_owned())
         }

@@ -1,7 +1,8 @@
 //! Five thousand seeded random linear programs of ten kinds: our kernel against HiGHS and microlp,
 //! and its certificate of each, agreed or not, checked in exact arithmetic.
 //!
-//! `HULLWARD_RANDOM=30000` runs as many instead, from seeds that the short run does not use.
+//! `HULLWARD_RANDOM=30000` runs as many instead, from seeds that the short run does not use;
+//! `HULLWARD_SEEDS=7000000` beside it begins elsewhere.
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 #![allow(clippy::print_stderr, reason = "a check says what it has seen")]
@@ -122,8 +123,9 @@ impl Seen {
 
 /// How many, and from which seed.
 fn extent() -> (u64, u64) {
-    let asked = std::env::var("HULLWARD_RANDOM").ok().and_then(|text| text.parse().ok());
-    asked.map_or((5_000, 0), |count| (count, 1_000_000))
+    let asked = |name: &str| std::env::var(name).ok().and_then(|text| text.parse().ok());
+    let first = asked("HULLWARD_SEEDS").unwrap_or(1_000_000);
+    asked("HULLWARD_RANDOM").map_or((5_000, 0), |count| (count, first))
 }
 
 #[test]

@@ -9,6 +9,9 @@ use hullward_lp::{Col, Limits, Progress, Simplex};
 /// A seed of the wide problems whose first attempts fail.
 const CAREFUL: u64 = 129;
 
+/// One that all attempts fail on, so that the last resort is asked.
+const LAST_RESORT: u64 = 420;
+
 fn check(shadow: &Shadow, limits: Limits, slices: &[u64], name: &str) {
     let mut whole = shadow.simplex();
     whole.solve(limits);
@@ -107,7 +110,8 @@ fn an_interruption_at_any_unit_of_work_changes_no_byte() {
 
 /// The same for a solve from an optimal basis: costs turned round (the primal method), bounds cut
 /// (the dual one), and a problem whose equalities hold up to rounding only, which no attempt
-/// settles at once (refined solves and new starts): stopped after every step.
+/// settles at once (refined solves and new starts), and one that the last resort settles: stopped after
+/// every step.
 #[test]
 fn an_interruption_of_every_method_changes_no_byte() {
     let mut primal = generate("box", 7).simplex();
@@ -116,8 +120,10 @@ fn an_interruption_of_every_method_changes_no_byte() {
     let mut dual = generate("degenerate", 9).simplex();
     dual.solve(Limits::default());
     (0..3).for_each(|j| dual.set_bounds(Col(j), 0.0, 0.0));
-    let careful = wide(70_000 + CAREFUL, CAREFUL.is_multiple_of(2)).simplex();
-    for (name, ready) in [("primal", primal), ("dual", dual), ("careful", careful)] {
+    let [careful, last] =
+        [CAREFUL, LAST_RESORT].map(|seed| wide(70_000 + seed, seed.is_multiple_of(2)).simplex());
+    let ready = [("primal", primal), ("dual", dual), ("careful", careful), ("last resort", last)];
+    for (name, ready) in ready {
         let bytes = |solver: &Simplex| {
             format!("{:?} {:?} {:?}", solver.outcome(), solver.stats(), solver.basis())
         };

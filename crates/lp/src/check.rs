@@ -100,9 +100,12 @@ mod tests {
         core.check().unwrap_err()
     }
 
+    /// What breaks an invariant, and a word of what is then said.
+    type Harm = (fn(&mut Core), &'static str);
+
     #[test]
     fn each_broken_invariant_is_named() {
-        let harms: [(fn(&mut Core), &str); 7] = [
+        let harms: [Harm; 7] = [
             (|core| core.work_cost.push(0.0), "an array of another length"),
             (|core| core.weight.push(1.0), "2 rows, but"),
             (|core| core.status[0] = Status::Basic, "head and statuses disagree"),

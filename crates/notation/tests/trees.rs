@@ -288,6 +288,9 @@ proptest! {
     fn trees_of_every_kind_read_back(Shown(tree) in formulation()) {
         for printed in [print(&tree), latex(&tree)] {
             let again = parse(&printed);
+            // A domain whose index nothing binds is given its quantifier as it is read, and that is
+            // told: such a tree is not what is written.
+            prop_assume!(again.diagnostics.iter().all(|found| found.code != "name.inferred"));
             let found: Vec<String> = again.diagnostics.iter().map(|d| d.line(&printed)).collect();
             prop_assert!(found.is_empty(), "{printed}\n{found:?}");
             prop_assert!(again.tree == tree, "{printed}\nis read as\n{}", print(&again.tree));

@@ -13,8 +13,13 @@ impl Parser<'_> {
     /// `c_{i,j} ≥ 0 ∀ (i,j) ∈ A`, `V`, `s, t ∈ V`.
     pub(super) fn data_line(&mut self) -> Read<Line> {
         let start = self.here();
+        let signed = self.peek() == T::Minus;
         let place = super::Surroundings { counts: true, ..self.place };
         let (left, links) = self.within(place, Self::operands)?;
+        if signed && links.is_empty() {
+            let span = self.since(start);
+            return Err(self.report(message::no_relation(span)));
+        }
         let clauses = self.clauses()?;
         if self.peek() != T::End {
             return Err(self.expected("a relation, a quantifier or two spaces before the remark"));

@@ -316,6 +316,15 @@ mod tests {
         assert_eq!(definition("m = 2 n \\text{pairs}").remark.as_deref(), Some("pairs"));
     }
 
+    /// A line that begins with a minus and has no relation names nothing; below another row of LaTeX
+    /// it would be read as that row's end.
+    #[test]
+    fn what_begins_with_a_minus_names_nothing() {
+        let parsed = crate::parse("definitions\n  n = 3\n  −1  ∀ i ∈ V\nminimise\n  x\n");
+        let codes: Vec<&str> = parsed.diagnostics.iter().map(|found| found.code).collect();
+        assert_eq!(codes, ["syntax.no-relation"]);
+    }
+
     #[test]
     fn domains_read_as_memberships() {
         let domain = |line: &str| {

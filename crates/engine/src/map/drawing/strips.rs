@@ -100,8 +100,11 @@ impl Stacked {
     }
 
     fn drawing(mut self, variable: &str) -> Drawing {
+        let all = self.strips.len();
         self.strips.truncate(STRIPS);
-        let name = format!("{variable} as a chart over time");
+        let part =
+            if all > STRIPS { format!(", the first {STRIPS} of {all}") } else { String::new() };
+        let name = format!("{variable} as a chart over time{part}");
         Drawing { name, picture: Picture::Strips { strips: self.strips, time: true } }
     }
 }

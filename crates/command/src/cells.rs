@@ -36,7 +36,7 @@ pub(crate) fn list(word: &str, out: &mut dyn Write, err: &mut dyn Write) -> Resu
 
 /// The place of the only growth study, and how many cells it has.
 fn only(scenario: &Scenario) -> std::result::Result<(usize, u32), String> {
-    let found = engine::cells(scenario, 0)?;
+    let found = engine::cells(scenario)?;
     match found.as_slice() {
         [one] => Ok(*one),
         [] => Err("the scenario has no study of kind \"growth\"".to_owned()),

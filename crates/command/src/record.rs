@@ -3,7 +3,6 @@
 
 use std::io::{Result, Write};
 
-use engine::native::instance_title;
 use record::file;
 use record::link;
 use record::pack::Pack;
@@ -15,7 +14,7 @@ use report::decision::{self, Evidence};
 
 use crate::ending::Ending;
 use crate::options::Form;
-use crate::run::{run_one, run_study};
+use crate::run::{run_one, run_study, studies_of, title_of};
 
 /// The record of a scenario in one of its forms, and how the runs ended; rivals that could not be run
 /// are named on `err` and stand in the record as such.
@@ -45,14 +44,14 @@ pub(crate) fn record(
     }
     let mut studies = Vec::new();
     for instance in 0..scenario.instances().count().max(1) {
-        for study in &scenario.studies {
+        for study in studies_of(scenario, instance) {
             let (reports, ended) = run_study(scenario, instance, study);
             if ended == Ending::Limit {
                 let (kind, seconds) = (&study.kind, scenario.run.seconds);
                 writeln!(err, "{name}: the study {kind} was stopped by the limit of {seconds} s")?;
             }
             ending = ending.max(ended);
-            let title = instance_title(scenario, instance);
+            let title = title_of(scenario, instance, study);
             studies.extend(reports.into_iter().map(|report| (title.clone(), report)));
         }
     }

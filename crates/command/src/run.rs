@@ -11,6 +11,7 @@ use record::message::Complaint;
 use record::results::{RivalResult, Status, Timing};
 use record::scenario::{Scenario, Study, letter};
 use record::study::Report;
+use report::study::over_instances;
 
 use crate::cells;
 use crate::clock::Clock;
@@ -103,9 +104,10 @@ impl Job<'_> {
         (out, err): (&mut dyn Write, &mut dyn Write),
     ) -> Result<Ending> {
         let mut ending = Ending::Done;
+        let mut all = Vec::new();
         for instance in 0..scenario.instances().count().max(1) {
-            let title = instance_title(scenario, instance);
-            for study in &scenario.studies {
+            for study in studies_of(scenario, instance) {
+                let title = title_of(scenario, instance, study);
                 let (reports, ended) = run_study(scenario, instance, study);
                 if ended == Ending::Limit {
                     let (name, kind, seconds) =
@@ -125,17 +127,25 @@ impl Job<'_> {
                         )?;
                         ending = ending.max(Ending::Wrong);
                     }
-                    if self.options.json {
-                        serde_json::to_writer(&mut *out, &report.line(&title))?;
-                        writeln!(out)?;
-                        out.flush()?;
-                    } else {
-                        table::evidence(report, &title, out)?;
-                    }
+                    self.say(report, &title, out)?;
                 }
+                all.extend(reports.into_iter().map(|report| (title.clone(), report)));
             }
         }
+        for report in over_instances(&all) {
+            self.say(&report, "", out)?;
+        }
         Ok(ending)
+    }
+
+    /// What a study found, as JSON or in words.
+    fn say(&self, report: &Report, title: &str, out: &mut dyn Write) -> Result<()> {
+        if !self.options.json {
+            return table::evidence(report, title, out);
+        }
+        serde_json::to_writer(&mut *out, &report.line(title))?;
+        writeln!(out)?;
+        out.flush()
     }
 
     /// The places of the rivals to run.
@@ -217,6 +227,18 @@ impl Job<'_> {
         }
         writeln!(err, "{name}: rival {} could not be run: {}", one.rival, error.message)
     }
+}
+
+/// The studies that are made on an instance: those that go over all of them stand with the first.
+pub(crate) fn studies_of(scenario: &Scenario, instance: usize) -> impl Iterator<Item = &Study> {
+    let own = move |study: &&Study| instance == 0 || !engine::is_over_all(&study.kind);
+    scenario.studies.iter().filter(own)
+}
+
+/// How what a study finds names its instance; empty where it speaks of all.
+pub(crate) fn title_of(scenario: &Scenario, instance: usize, study: &Study) -> String {
+    let all = engine::is_over_all(&study.kind);
+    if all { String::new() } else { instance_title(scenario, instance) }
 }
 
 /// A study, with a look at the clock between slices.

@@ -5,9 +5,10 @@ use std::rc::Rc;
 
 use record::results::ErrorReport;
 use record::scenario::{Rival, Role, Scenario, letter};
-use study::{Source, Subject};
+use study::{Ground, Source, Subject};
 
 use crate::load::{Loaded, Loading, formulation, job, states};
+use crate::native::instance_title;
 use crate::readings::Readings;
 
 /// Non-zeros that are written at once where nobody waits.
@@ -62,6 +63,17 @@ impl Gathering {
         true
     }
 
+    /// Those that are there, with the title of their instance.
+    pub(crate) fn ground(&mut self) -> Ground {
+        let title = instance_title(&self.scenario, self.instance);
+        Ground { title, subjects: std::mem::take(&mut self.subjects) }
+    }
+
+    /// The rivals on the next instance.
+    pub(crate) fn next(&self) -> Self {
+        Self::new(self.scenario.clone(), self.instance + 1)
+    }
+
     /// What is being done, as a clause.
     pub(crate) fn doing(&self) -> String {
         format!("writing the rows of {}", letter(self.next))
@@ -99,9 +111,12 @@ fn source(
     }))
 }
 
-/// The rivals that become a model, all at once.
-pub(crate) fn gathered_at_once(scenario: &Scenario, instance: usize) -> Vec<Subject> {
-    let mut gathering = Gathering::new(scenario.clone(), instance);
-    while gathering.advance(AT_ONCE) {}
-    gathering.subjects
+/// The rivals that become a model on each instance, all at once.
+pub(crate) fn grounds_at_once(scenario: &Scenario) -> Vec<Ground> {
+    let on = |instance: usize| {
+        let mut gathering = Gathering::new(scenario.clone(), instance);
+        while gathering.advance(AT_ONCE) {}
+        gathering.ground()
+    };
+    (0..scenario.instances().count().max(1)).map(on).collect()
 }

@@ -45,7 +45,7 @@ pub use handover::{HandOver, Refusal, latex, mps, notation_text, tightened};
 pub use load::{describe, prepare};
 pub use mps::{looks_like_mps, mps_report};
 pub use readings::instance_report;
-pub use studies::{KINDS, StudyRun, cells, gathered};
+pub use studies::{KINDS, StudyRun, cells, gathered, is_over_all};
 pub use worker::Worker;
 
 /// The version of the engine: it stands in saved logs, and beside saved results.

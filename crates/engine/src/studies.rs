@@ -1,12 +1,14 @@
 //! Studies of a scenario: each is a plan that the scenario holds, run in slices over all rivals on
-//! one instance.
+//! one instance, or over all instances where one result speaks of them together.
+
+use std::rc::Rc;
 
 use record::scenario::{Field, Scenario, Study};
 use record::study::Report;
 use study::production::Pasted;
-use study::{Plan, Running, Subject};
+use study::{Desk, Ground, Plan, Running, Subject};
 
-use crate::gather::{Gathering, gathered_at_once};
+use crate::gather::{Gathering, grounds_at_once};
 use crate::native::instance_title;
 
 /// The kinds of study there are.
@@ -24,6 +26,12 @@ pub const KINDS: [&str; 12] = [
     "variability",
     "production",
 ];
+
+/// Whether a study goes over all instances of a scenario at once: then it is made once, on the first.
+#[must_use]
+pub fn is_over_all(kind: &str) -> bool {
+    matches!(kind, "growth" | "variability")
+}
 
 /// A study on its way.
 #[derive(Debug)]
@@ -48,6 +56,10 @@ struct Begun {
     cell: Option<u32>,
     pasted: Pasted,
     gathering: Gathering,
+    /// Those that are there, instance by instance.
+    grounds: Vec<Ground>,
+    /// How many instances it goes over.
+    instances: usize,
 }
 
 impl StudyRun {
@@ -67,13 +79,20 @@ impl StudyRun {
     fn some(scenario: &Scenario, instance: usize, study: &Study, cell: Option<u32>) -> Self {
         let stage = match plan(scenario, study) {
             Err(why) => Stage::Running(left(study, why)),
-            Ok(plan) => Stage::Gathering(Box::new(Begun {
-                study: study.clone(),
-                plan,
-                cell,
-                pasted: pasted(scenario, instance, study),
-                gathering: Gathering::new(scenario.clone(), instance),
-            })),
+            Ok(plan) => {
+                let over_all = is_over_all(&study.kind);
+                let (first, instances) =
+                    if over_all { (0, scenario.instances().count()) } else { (instance, 1) };
+                Stage::Gathering(Box::new(Begun {
+                    study: study.clone(),
+                    plan,
+                    cell,
+                    pasted: pasted(scenario, instance, study),
+                    gathering: Gathering::new(scenario.clone(), first),
+                    grounds: Vec::new(),
+                    instances,
+                }))
+            }
         };
         Self { stage }
     }
@@ -87,12 +106,18 @@ impl StudyRun {
         if begun.gathering.advance(ticks) {
             return false;
         }
-        let subjects = std::mem::take(&mut begun.gathering.subjects);
-        let running = if subjects.is_empty() && begun.study.kind != "production" {
+        begun.grounds.push(begun.gathering.ground());
+        if begun.grounds.len() < begun.instances {
+            begun.gathering = begun.gathering.next();
+            return false;
+        }
+        let grounds = std::mem::take(&mut begun.grounds);
+        let none = grounds.iter().all(|ground| ground.subjects.is_empty());
+        let running = if none && begun.study.kind != "production" {
             left(&begun.study, "no rival could be run".to_owned())
         } else {
             let asked = (begun.cell, std::mem::take(&mut begun.pasted));
-            self::begun(&begun.study, subjects, begun.plan.clone(), asked)
+            self::begun(&begun.study, grounds, begun.plan.clone(), asked)
         };
         self.stage = Stage::Running(running);
         false
@@ -141,12 +166,17 @@ fn left(study: &Study, why: String) -> Running<Vec<Report>> {
 
 fn begun(
     study: &Study,
-    subjects: Vec<Subject>,
+    grounds: Vec<Ground>,
     plan: Plan,
     (cell, pasted): (Option<u32>, Pasted),
 ) -> Running<Vec<Report>> {
     let kind = study.kind.clone();
     Running::new(|desk| async move {
+        if is_over_all(&kind) {
+            return over_all(&kind, desk, grounds, (plan, cell)).await;
+        }
+        let subjects: Vec<Subject> =
+            grounds.into_iter().flat_map(|ground| ground.subjects).collect();
         match kind.as_str() {
             "ladder" => vec![Report::Ladder(study::ladder::ladder(desk, subjects, plan).await)],
             "families" => {
@@ -166,14 +196,6 @@ fn begun(
             "symmetry" => {
                 vec![Report::Symmetry(study::symmetry::symmetry(desk, subjects, plan).await)]
             }
-            "variability" => {
-                let found = study::variability::variability(desk, subjects, plan).await;
-                vec![Report::Variability(Box::new(found))]
-            }
-            "growth" => {
-                let growth = study::growth::growth(desk, subjects, plan, cell).await;
-                vec![Report::Growth(Box::new(growth))]
-            }
             "production" => {
                 let found = study::production::production(desk, subjects, (plan, pasted)).await;
                 vec![Report::Production(Box::new(found))]
@@ -191,16 +213,31 @@ fn begun(
     })
 }
 
-/// How many cells the growth studies of a scenario have on one of its instances, each with its place
+/// A study that goes over all instances.
+async fn over_all(
+    kind: &str,
+    desk: Rc<Desk>,
+    grounds: Vec<Ground>,
+    (plan, cell): (Plan, Option<u32>),
+) -> Vec<Report> {
+    if kind == "growth" {
+        let found = study::growth::growth(desk, grounds, plan, cell).await;
+        return vec![Report::Growth(Box::new(found))];
+    }
+    let found = study::variability::variability(desk, grounds, plan).await;
+    vec![Report::Variability(Box::new(found))]
+}
+
+/// How many cells the growth studies of a scenario have over its instances, each with its place
 /// among the scenario's studies.
 ///
 /// # Errors
 /// A field that a study does not have.
-pub fn cells(scenario: &Scenario, instance: usize) -> Result<Vec<(usize, u32)>, String> {
-    let subjects = gathered_at_once(scenario, instance);
+pub fn cells(scenario: &Scenario) -> Result<Vec<(usize, u32)>, String> {
+    let grounds = grounds_at_once(scenario);
     let growth = scenario.studies.iter().enumerate().filter(|(_, study)| study.kind == "growth");
     growth
-        .map(|(place, study)| Ok((place, study::growth::cells(&subjects, &plan(scenario, study)?))))
+        .map(|(place, study)| Ok((place, study::growth::cells(&grounds, &plan(scenario, study)?))))
         .collect()
 }
 

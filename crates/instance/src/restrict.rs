@@ -17,7 +17,19 @@ impl Instance {
     /// As [`Self::first`], of elements that a seed chooses; they keep their order.
     #[must_use]
     pub fn part(&self, count: usize, seed: Option<u64>) -> Self {
-        let kept = Kept::of(self, count, seed);
+        self.restricted(&Kept::of(self, count, seed))
+    }
+
+    /// The instance with these elements of its sets alone, and of those only what is said of them; an
+    /// element that the instance names (a depot) stays. `O(size of the instance)`.
+    #[must_use]
+    pub fn keeping(&self, elements: &BTreeSet<String>) -> Self {
+        let mut kept = Kept(elements.clone());
+        kept.name(self);
+        self.restricted(&kept)
+    }
+
+    fn restricted(&self, kept: &Kept) -> Self {
         let mut part = self.clone();
         for (_, datum) in &mut part.data {
             kept.restrict(datum);
@@ -30,6 +42,14 @@ impl Instance {
             geographic: points.geographic,
         });
         part
+    }
+
+    /// The elements of its sets, each once, in the order in which they come.
+    #[must_use]
+    pub fn elements(&self) -> Vec<String> {
+        let mut seen = BTreeSet::new();
+        let all = sets(self).into_iter().flatten();
+        all.filter(|label| seen.insert(label.clone())).collect()
     }
 
     /// The number of elements of the largest set.
@@ -56,12 +76,18 @@ impl Kept {
                 kept.extend(chosen(set, count, seed));
             }
         }
+        let mut kept = Self(kept);
+        kept.name(instance);
+        kept
+    }
+
+    /// Keeps the elements that the instance names.
+    fn name(&mut self, instance: &Instance) {
         for (_, datum) in instance.data() {
             if let Datum::Element(label) = datum {
-                kept.insert(label.clone());
+                self.0.insert(label.clone());
             }
         }
-        Self(kept)
     }
 
     fn has(&self, label: &str) -> bool {

@@ -83,6 +83,20 @@ impl Model {
         Ok(builder.build())
     }
 
+    /// The same with the rows numbered from 1.
+    ///
+    /// # Errors
+    /// As [`Self::with_rows`].
+    pub fn with_numbered_rows(&self, family: &str, rows: Vec<Row>) -> Result<Self, ModelError> {
+        let mut builder = ModelBuilder::from_model(self.clone());
+        builder.family(family, FamilyState::In, false);
+        for (place, row) in rows.into_iter().enumerate() {
+            let label = builder.label(&(place + 1).to_string());
+            builder.row(&[label], row)?;
+        }
+        Ok(builder.build())
+    }
+
     /// The model with these rows in place of those that stand there. `O(size of the model)`.
     ///
     /// # Errors

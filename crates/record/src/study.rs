@@ -28,7 +28,7 @@ pub use numerics::{FamilyNumerics, Numerics, RivalNumerics};
 pub use order::{Certificate, MappedColumn, Order, OrderLevel, Relation, RowProof, SystemRow};
 pub use production::{Against, Production};
 pub use symmetry::{Generator, Interchangeable, RivalSymmetry, Symmetry};
-pub use tightening::{FamilyTightening, RivalTightening, Tightening};
+pub use tightening::{FamilyTightening, RivalTightening, SwitchRow, Tightening, TooSmall};
 pub use variability::{RivalVariability, Run, Variability, VariabilityPair};
 
 /// What one study found, or one pair of rivals in it.

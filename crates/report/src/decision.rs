@@ -3,6 +3,7 @@
 //! stand beside it.
 
 mod html;
+mod json;
 mod markdown;
 mod reopen;
 
@@ -11,7 +12,7 @@ use record::scenario::{Rival, Scenario, letter};
 use record::study::Report;
 
 use crate::number::{count, of, percent, short, ten_digits};
-use crate::study::{Section, Table, and, overview, sections};
+use crate::study::{Section, Table, and, over_instances, overview, sections};
 
 /// Stands at the end of every record.
 const CAUTION: &str = "A plan that comes out of a model is a decision aid; driving, working-time, \
@@ -64,6 +65,14 @@ pub fn markdown(evidence: &Evidence<'_>) -> String {
     markdown::document(&blocks(evidence))
 }
 
+/// The record as a JSON array, a piece of it each: an object whose only field is its kind ("title",
+/// "heading", "subheading", "text", "notes", "list", "table", "figure" or "code"). A table has `head` and
+/// `rows`, a figure is SVG.
+#[must_use]
+pub fn json(evidence: &Evidence<'_>) -> String {
+    json::document(&blocks(evidence))
+}
+
 fn blocks(evidence: &Evidence<'_>) -> Vec<Block> {
     let mut out = question(evidence);
     out.push(Block::Heading("What was found".to_owned()));
@@ -78,6 +87,9 @@ fn blocks(evidence: &Evidence<'_>) -> Vec<Block> {
     if !evidence.studies.is_empty() {
         out.push(Block::Heading("Evidence".to_owned()));
         out.extend(orders(evidence));
+        for report in over_instances(evidence.studies) {
+            out.extend(sections(&report).into_iter().flat_map(|found| section("", found)));
+        }
         for (instance, report) in evidence.studies {
             out.extend(sections(report).into_iter().flat_map(|found| section(instance, found)));
         }

@@ -10,6 +10,7 @@ mod infeasibility;
 mod ladder;
 mod numerics;
 mod order;
+mod plans;
 mod production;
 mod symmetry;
 mod tightening;
@@ -19,6 +20,7 @@ use record::study::Report;
 
 use crate::number::short;
 pub use hasse::{Figure, overview};
+pub use order::over_instances;
 
 /// A part of the evidence.
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
@@ -82,6 +84,18 @@ pub fn derived(report: &Report) -> Vec<(String, String)> {
     let all: Vec<(String, &String)> = match report {
         Report::Tightening(found) => {
             let words = |letter: &str| format!("Add {letter} tightened as a rival");
+            let cut = |letter: &str| {
+                format!(
+                    "Add {letter} tightened with the cut-off as a rival: an optimum stays, worse plans may go"
+                )
+            };
+            let both = found.rivals.iter().flat_map(|one| {
+                [(words(&one.rival), &one.model), (cut(&one.rival), &one.model_by_cutoff)]
+            });
+            both.collect()
+        }
+        Report::Cuts(found) => {
+            let words = |letter: &str| format!("Add {letter} with these cuts as rows as a rival");
             found.rivals.iter().map(|one| (words(&one.rival), &one.model)).collect()
         }
         Report::Symmetry(found) => {

@@ -67,7 +67,9 @@ pub(crate) fn claims(
         shared.pairs.iter().map(|&(inner, outer)| (outer, inner)).collect();
     let turned = |claim: Claim| {
         let entries = claim.entries.into_iter().filter_map(|(c, a)| Some((*to.get(&c)?, a)));
-        Claim { entries: entries.collect(), ..claim }
+        let mut entries: Vec<(ColumnId, Number)> = entries.collect();
+        entries.sort_by_key(|(column, _)| *column);
+        Claim { entries, ..claim }
     };
     let mut out: Vec<Claim> = halves(&outer.model, most)?.into_iter().map(turned).collect();
     bounds(&mut out, &outer.model, &to, inner);

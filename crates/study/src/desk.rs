@@ -117,6 +117,19 @@ impl Desk {
         (solved(&search, false), condition)
     }
 
+    /// The relaxation with general cuts, and the cuts that are in it at the end.
+    pub(crate) async fn with_cuts(
+        &self,
+        model: &Rc<Model>,
+        settings: Settings,
+    ) -> (Solved, Vec<model::Row>) {
+        let searched = settings.search;
+        let mut search = Search::new(Rc::clone(model), settings);
+        poll_fn(|_| self.go_on(&mut search, searched)).await;
+        self.count();
+        (solved(&search, searched), search.cut_rows())
+    }
+
     /// The members of families over subsets that the relaxation of a model needs.
     pub(crate) async fn members(&self, model: &Rc<Model>) -> Vec<(String, model::Row)> {
         let settings = Settings { search: false, ..Settings::default() };

@@ -1,7 +1,7 @@
 //! The growth study: how rivals compare as instances grow.
 //!
-//! Every rival runs on every instance: generated ones, or parts of the scenario's own, over sizes,
-//! classes of data and seeds. A run that reaches the limit of nodes counts as stopped there: its work
+//! Every rival runs on every instance: generated ones, or parts of the scenario's own, of each of them
+//! where there are several, over sizes, classes of data and seeds. A run that reaches the limit of nodes counts as stopped there: its work
 //! is at least so much. Rivals are compared on the same instances (paired ratios); what is not
 //! distinguishable is said to be so. Each run is a cell of its own, so that a batch queue can make
 //! them one by one; [`summed_up`] takes the cells however they were made.
@@ -17,7 +17,7 @@ use tree::Status;
 
 use crate::desk::Desk;
 use crate::plan::Plan;
-use crate::subject::{Source, Subject};
+use crate::subject::{Ground, Source, Subject};
 
 mod summary;
 
@@ -27,31 +27,34 @@ pub use summary::summed_up;
 #[derive(Debug, Clone, PartialEq, Eq)]
 struct Setting {
     size: u32,
+    /// The place of the scenario's instance of which it is a part.
+    ground: usize,
     class: Option<Class>,
     seed: u64,
 }
 
 /// Runs every cell, or one of them where a number is given; sums up where all were run.
-pub async fn growth(
-    desk: Rc<Desk>,
-    subjects: Vec<Subject>,
-    plan: Plan,
-    cell: Option<u32>,
-) -> Growth {
-    let family = generated(&subjects, &plan);
-    let mut out = blank(&subjects, &plan, family.as_deref());
+pub async fn growth(desk: Rc<Desk>, grounds: Vec<Ground>, plan: Plan, cell: Option<u32>) -> Growth {
+    let first = grounds.first().map_or(&[][..], |ground| &ground.subjects);
+    let family = generated(first, &plan);
+    let mut out = blank(&grounds, &plan, family.as_deref());
     let mut number = 0;
-    for setting in settings(&plan, family.is_some()) {
-        let data = cell.is_none_or(|cell| is_of(cell, number, subjects.len()));
+    for setting in settings(&plan, family.as_ref().map_or(grounds.len(), |_| 0)) {
+        let data = cell.is_none_or(|cell| is_of(cell, number, first.len()));
         let instance = data.then(|| family.as_deref().and_then(|family| made(family, &setting)));
-        for subject in &subjects {
+        for rival in first {
             if cell.is_none_or(|cell| cell == number) {
                 let what =
-                    format!("{} at size {}, seed {}", subject.letter, setting.size, setting.seed);
+                    format!("{} at size {}, seed {}", rival.letter, setting.size, setting.seed);
                 desk.say(format!("run {} of {}: {what}", number + 1, out.of));
                 let instance = instance.as_ref().and_then(Option::as_ref);
-                let run = run(&desk, subject, (&setting, instance), &plan).await;
-                out.cells.push(Cell { cell: number, ..run });
+                let run = match on(&grounds, &setting, &rival.letter) {
+                    Some(subject) => run(&desk, subject, (&setting, instance), &plan).await,
+                    None => failed(&rival.letter, &setting),
+                };
+                let title =
+                    if family.is_some() { "" } else { grounds[setting.ground].title.as_str() };
+                out.cells.push(Cell { cell: number, instance: title.to_owned(), ..run });
             }
             number += 1;
         }
@@ -59,11 +62,18 @@ pub async fn growth(
     if cell.is_none() { summed_up(out) } else { out }
 }
 
-/// How many cells a study has.
+/// A rival on the instance of a setting; `None` where it is no model there.
+fn on<'g>(grounds: &'g [Ground], setting: &Setting, letter: &str) -> Option<&'g Subject> {
+    grounds.get(setting.ground)?.subjects.iter().find(|subject| subject.letter == letter)
+}
+
+/// How many cells a study has over all instances.
 #[must_use]
-pub fn cells(subjects: &[Subject], plan: &Plan) -> u32 {
-    let instances = settings(plan, generated(subjects, plan).is_some()).len();
-    u32::try_from(instances * subjects.len()).unwrap_or(u32::MAX)
+pub fn cells(grounds: &[Ground], plan: &Plan) -> u32 {
+    let Some(first) = grounds.first() else { return 0 };
+    let generated = generated(&first.subjects, plan).is_some();
+    let instances = settings(plan, if generated { 0 } else { grounds.len() }).len();
+    u32::try_from(instances * first.subjects.len()).unwrap_or(u32::MAX)
 }
 
 /// Whether a cell is one of the rivals' of the instance that begins at `first`.
@@ -71,20 +81,22 @@ fn is_of(cell: u32, first: u32, rivals: usize) -> bool {
     cell >= first && (cell - first) as usize <= rivals
 }
 
-fn blank(subjects: &[Subject], plan: &Plan, family: Option<&str>) -> Growth {
+fn blank(grounds: &[Ground], plan: &Plan, family: Option<&str>) -> Growth {
     let largest = plan.growth.sizes.iter().copied().max().unwrap_or(0);
-    let own = subjects.iter().filter_map(|subject| subject.source.as_ref());
+    let subjects = grounds.iter().flat_map(|ground| &ground.subjects);
+    let own = subjects.filter_map(|subject| subject.source.as_ref());
     let extent = own.map(|source| source.instance.extent()).max().unwrap_or(0);
     let extent = u32::try_from(extent).unwrap_or(u32::MAX);
     Growth {
         data: match family {
             Some(family) => format!("generated: {family}"),
+            None if grounds.len() > 1 => format!("parts of {} instances", grounds.len()),
             None => "parts of the instance".to_owned(),
         },
         nodes: plan.nodes,
         production: plan.growth.production.unwrap_or(extent.max(largest)),
         seed: plan.seed,
-        of: cells(subjects, plan),
+        of: cells(grounds, plan),
         ..Growth::default()
     }
 }
@@ -97,16 +109,18 @@ fn generated(subjects: &[Subject], plan: &Plan) -> Option<String> {
     (!plan.growth.classes.is_empty() && subjects.iter().all(same)).then_some(family)
 }
 
-fn settings(plan: &Plan, generated: bool) -> Vec<Setting> {
-    let classes: Vec<Option<Class>> = if generated {
-        plan.growth.classes.iter().copied().map(Some).collect()
+/// Parts of so many instances; with none of them generated instances of each class.
+fn settings(plan: &Plan, grounds: usize) -> Vec<Setting> {
+    let sources: Vec<(usize, Option<Class>)> = if grounds == 0 {
+        plan.growth.classes.iter().map(|&class| (0, Some(class))).collect()
     } else {
-        vec![None]
+        (0..grounds).map(|ground| (ground, None)).collect()
     };
     let mut out = Vec::new();
     for &size in &plan.growth.sizes {
-        for &class in &classes {
-            out.extend(plan.growth.seeds.iter().map(|&seed| Setting { size, class, seed }));
+        for &(ground, class) in &sources {
+            let seeds = plan.growth.seeds.iter();
+            out.extend(seeds.map(|&seed| Setting { size, ground, class, seed }));
         }
     }
     out
@@ -116,6 +130,20 @@ fn made(family: &str, setting: &Setting) -> Option<Instance> {
     read(&generate(family, setting.size, setting.class?, setting.seed)?, None).instance
 }
 
+fn blank_cell(letter: &str, setting: &Setting) -> Cell {
+    Cell {
+        rival: letter.to_owned(),
+        size: setting.size,
+        class: setting.class.map_or_else(String::new, |class| class.name().to_owned()),
+        seed: setting.seed,
+        ..Cell::default()
+    }
+}
+
+fn failed(letter: &str, setting: &Setting) -> Cell {
+    Cell { failed: "no model of that size".to_owned(), ..blank_cell(letter, setting) }
+}
+
 /// One rival on one instance.
 async fn run(
     desk: &Desk,
@@ -123,20 +151,14 @@ async fn run(
     (setting, generated): (&Setting, Option<&Instance>),
     plan: &Plan,
 ) -> Cell {
-    let cell = Cell {
-        rival: subject.letter.clone(),
-        size: setting.size,
-        class: setting.class.map_or_else(String::new, |class| class.name().to_owned()),
-        seed: setting.seed,
-        ..Cell::default()
-    };
+    let cell = blank_cell(&subject.letter, setting);
     let source = subject.source.as_ref();
     let model = match source {
         Some(source) => model_on(desk, source, setting, generated).await,
         None => None,
     };
     let Some(model) = model.map(Rc::new) else {
-        return Cell { failed: "no model of that size".to_owned(), ..cell };
+        return failed(&subject.letter, setting);
     };
     let count = |length: usize| u32::try_from(length).unwrap_or(u32::MAX);
     let cell =

@@ -13,7 +13,7 @@ mod repair;
 
 use std::rc::Rc;
 
-use model::{Model, RowId, Sense, nearest_f64};
+use model::{Model, Row, Sense, nearest_f64};
 use record::study::{ConflictRow, Infeasibility, RivalInfeasibility, Standing};
 use tree::Status;
 
@@ -21,7 +21,7 @@ use crate::desk::{Desk, Solved};
 use crate::plan::Plan;
 use crate::subject::Subject;
 use crate::words::short;
-use filter::{Filter, Part};
+pub(crate) use filter::{Filter, Part};
 
 /// Entries of a row that are written out at most.
 const MOST_TERMS: usize = 12;
@@ -76,18 +76,7 @@ fn tell(model: &Model, kept: &[Part], out: &mut RivalInfeasibility) {
             Part::Family(family) => *family,
         };
         let family = model.families()[family.index()].name.clone();
-        out.rows.push(match part {
-            Part::Row(row) => ConflictRow {
-                row: model.row_name(*row),
-                family: family.clone(),
-                says: says(model, *row),
-            },
-            Part::Family(_) => ConflictRow {
-                row: format!("{family} on demand"),
-                family: family.clone(),
-                says: "all its rows".to_owned(),
-            },
-        });
+        out.rows.push(conflict_row(model, *part));
         if !out.families.contains(&family) {
             out.families.push(family);
         }
@@ -102,9 +91,25 @@ fn tell(model: &Model, kept: &[Part], out: &mut RivalInfeasibility) {
     }
 }
 
+/// A part of a conflict by name, with what it says.
+pub(crate) fn conflict_row(model: &Model, part: Part) -> ConflictRow {
+    let name = |family: model::FamilyId| model.families()[family.index()].name.clone();
+    match part {
+        Part::Row(row) => ConflictRow {
+            row: model.row_name(row),
+            family: name(model.row_family(row)),
+            says: says(model, &model.row(row)),
+        },
+        Part::Family(family) => ConflictRow {
+            row: format!("{} on demand", name(family)),
+            family: name(family),
+            says: "all its rows".to_owned(),
+        },
+    }
+}
+
 /// A row as it is written: `2 x[a] − y ≤ 3`.
-pub(crate) fn says(model: &Model, row: RowId) -> String {
-    let row = model.row(row);
+pub(crate) fn says(model: &Model, row: &Row) -> String {
     let mut left = String::new();
     for (place, (column, a)) in row.entries.iter().take(MOST_TERMS).enumerate() {
         let a = nearest_f64(a);

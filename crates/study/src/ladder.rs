@@ -12,6 +12,7 @@ use crate::plan::Plan;
 use crate::propagate::{bounds_of, propagate, with_bounds};
 use crate::subject::Subject;
 use crate::tightening::tightened_by_data;
+use crate::variability::root;
 use crate::words::{direction, of, same};
 
 /// Climbs the ladder of each rival.
@@ -41,7 +42,9 @@ pub async fn ladder(desk: Rc<Desk>, subjects: Vec<Subject>, plan: Plan) -> Ladde
     for rival in &mut rivals {
         close(rival, reference);
     }
-    Ladder { reference, reference_from: reference_from.unwrap_or_default(), rivals }
+    let (root, root_used) = subjects.iter().find_map(root).unwrap_or_default();
+    let reference_from = reference_from.unwrap_or_default();
+    Ladder { reference, reference_from, rivals, root, root_used }
 }
 
 /// Sets the share of the gap that each rung closes.

@@ -44,7 +44,7 @@ mod words;
 
 pub use desk::{Desk, Running, Solved};
 pub use plan::{GrowthPlan, Plan};
-pub use subject::{Source, Subject, model_of};
+pub use subject::{Ground, Source, Subject, model_of};
 
 #[cfg(test)]
 mod tests;

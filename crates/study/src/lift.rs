@@ -9,6 +9,7 @@
 use std::collections::BTreeMap;
 
 use model::{ColumnId, Model, Number};
+use record::results::SolutionEntry;
 
 /// Values within so much of a whole number are that number.
 const WHOLE: f64 = 1e-6;
@@ -57,6 +58,17 @@ pub fn held(model: &Model, values: &[(ColumnId, f64)]) -> Model {
         (column, value.clone(), value)
     });
     model.bounded(&bounds.collect::<Vec<_>>())
+}
+
+/// A value of a column as results print it.
+pub(crate) fn entry(model: &Model, column: ColumnId, value: f64) -> SolutionEntry {
+    let labels = model.column_tuple(column).iter();
+    let variable = model.columns()[column.index()].variable;
+    SolutionEntry {
+        variable: model.variables()[variable.index()].name.clone(),
+        indices: labels.map(|&label| model.labels().name(label).to_owned()).collect(),
+        value: rounded(value),
+    }
 }
 
 /// The whole number that a value is meant to be, where it is meant to be one.

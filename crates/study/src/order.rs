@@ -146,24 +146,29 @@ impl Pair<'_> {
                 outer.letter,
                 inner.letter
             ));
-            let most = maximiser.most(&claim.entries, &claim.side).await;
+            let most = match maximiser.as_written(&claim.entries, &claim.side) {
+                Some(most) => most,
+                None => maximiser.most(&claim.entries, &claim.side).await,
+            };
             let over = most.value.map(|value| value - nearest_f64(&claim.side));
-            if over.is_none_or(|over| over > VIOLATED) && !most.nothing {
+            let proof = most.proof.filter(|(_, bound)| *bound <= claim.side);
+            if proof.is_none() && over.is_none_or(|over| over > VIOLATED) && !most.nothing {
                 out.holds = Some(false);
                 out.witness.clone_from(&claim.name);
                 out.violation = over;
                 certificate::witness(&mut out, &inner.model, (claim, &most.point));
                 return out;
             }
-            let proof = most.proof.filter(|(_, bound)| *bound <= claim.side);
+            if proof.is_none() && out.why.is_empty() {
+                out.why = format!("exact arithmetic did not prove {}", claim.name);
+            }
             out.proved += u32::from(proof.is_some());
             proofs.extend(proof.map(|(multipliers, _)| (claim, multipliers)));
         }
         out.holds = (out.proved == out.rows).then_some(true);
         if out.holds.is_some() {
             certificate::put(&mut out, &inner.model, (&maximiser, &proofs));
-        } else {
-            out.why = "exact arithmetic did not prove every row".to_owned();
+            out.why.clear();
         }
         out
     }

@@ -27,6 +27,15 @@ pub struct Subject {
     pub source: Option<Source>,
 }
 
+/// The rivals on one instance of a scenario.
+#[derive(Debug, Clone, Default)]
+pub struct Ground {
+    /// The instance's title; empty where the scenario has one instance.
+    pub title: String,
+    /// The rivals.
+    pub subjects: Vec<Subject>,
+}
+
 /// From what a rival's model was made.
 #[derive(Debug, Clone)]
 pub struct Source {

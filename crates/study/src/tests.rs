@@ -96,6 +96,13 @@ fn labels_with_too_small_a_coefficient_are_caught_on_few_stops() {
     assert_eq!((example.admitted_by.as_str(), example.refused_by.as_str()), ("A", "B"));
     assert!(example.size.is_some_and(|size| size <= 4), "{:?}", example.size);
     assert!(example.violated.contains(&"order".to_owned()), "{:?}", example.violated);
+    // The stops on which it shows, the rows that the plan cannot hold with, and a plan beside it.
+    assert_eq!(example.elements.len() as u32, example.size.expect("a part"), "{example:?}");
+    assert!(example.rows.iter().any(|row| row.family == "order"), "{example:?}");
+    assert!(example.rows.iter().all(|row| row.says.contains('≤') || row.says.contains('=')));
+    let stops = |plan: &[record::results::SolutionEntry]| plan.len();
+    assert_eq!(stops(&example.plan), example.elements.len(), "a round: {example:?}");
+    assert!(example.nearest.is_empty() || example.nearest != example.plan, "{example:?}");
 }
 
 /// Cutting one way round a triangle: a plan that costs −1 more either way is none of the other.
@@ -123,6 +130,11 @@ fn covering_and_partitioning_agree_for_non_negative_costs_alone() {
     );
     let example = verdict.counterexample.expect("two jobs at once");
     assert_eq!((example.admitted_by.as_str(), example.size), ("A", Some(2)));
+    // Two of the four jobs tell it, and the one row says by how much.
+    assert_eq!(example.elements, ["a", "b"]);
+    let [row] = example.rows.as_slice() else { panic!("{example:?}") };
+    assert_eq!(row.says, "x[a] + x[b] = 1, and the plan gives 2");
+    assert_eq!(example.nearest.len(), 1, "one of the two alone: {example:?}");
 }
 
 #[test]
@@ -235,6 +247,9 @@ subject to
         close(found.bound, Some(100.5)) && close(found.bound_by_data, Some(112.5)),
         "{found:?}"
     );
+    assert_eq!((found.range, found.range_after), ((1.0, 1000.0), (1.0, 40.0)));
+    assert_eq!(found.cutoff, Some(120.0));
+    assert!(found.too_small.is_empty(), "{found:?}");
     let rungs = driven(9_999, |desk| crate::ladder::ladder(desk, again, Plan::default()));
     let bounds: Vec<f64> = rungs.rivals[0].rungs.iter().filter_map(|rung| rung.bound).collect();
     let optimum = rungs.reference.expect("a plan");
@@ -242,6 +257,40 @@ subject to
     for bound in bounds {
         assert!(bound <= optimum + 1e-7 && bound >= 100.5 - 1e-7, "{bound}");
     }
+}
+
+/// Two lots of at most 30 in all can be made at once, so that 20 are not enough for either; and of all
+/// plans only those with one lot are as good as the best.
+#[test]
+fn a_plan_proves_a_coefficient_too_small_and_a_cutoff_needs_less() {
+    let text = "Lots
+data
+  T  periods
+maximise
+  Σ_{t ∈ T} 3 q_t − Σ_{t ∈ T} y_t
+subject to
+  q_t ≤ 20 y_t                    ∀ t ∈ T  (switch)
+  Σ_{t ∈ T} q_t ≤ 30              (all)
+  0 ≤ q_t ≤ 25                    ∀ t ∈ T
+  y_t ∈ {0, 1}                    ∀ t ∈ T
+";
+    let subjects = vec![subject("A", text, &instance("T\na b\n"))];
+    let found =
+        driven(9_999, |desk| crate::tightening::tightening(desk, subjects, Plan::default()));
+    let rival = &found.rivals[0];
+    let [shown] = rival.too_small.as_slice() else { panic!("{rival:?}") };
+    // All else admits 25 in one period.
+    assert_eq!((shown.row.as_str(), shown.switch.as_str()), ("switch[a]", "y[a]"));
+    assert!(close(Some(shown.reaches), Some(25.0)) && close(Some(shown.needs), Some(25.0)));
+    assert!(close(Some(shown.allows), Some(20.0)), "{shown:?}");
+    assert!(
+        shown.plan.iter().any(|entry| entry.variable == "q" && (entry.value - 25.0).abs() < 1e-6)
+    );
+    // Two switches and 30 units: 3·30 − 2 = 88.
+    assert!(close(rival.cutoff, Some(88.0)), "{rival:?}");
+    assert_eq!(rival.switches.len(), 2);
+    assert!(rival.switches.iter().all(|row| row.by_cutoff <= row.by_relaxation + 1e-9));
+    assert!(rival.bound_by_cutoff.is_some_and(|bound| bound >= 88.0 - 1e-6), "{rival:?}");
 }
 
 #[test]
@@ -271,6 +320,7 @@ fn few_classes_of_cuts_are_chosen_that_gain_most_of_what_all_gain() {
     let data = stops(9);
     let subjects = vec![shipped("A", "atsp/labels", &data)];
     let again = subjects.clone();
+    let rows = subjects[0].model.row_count();
     let found =
         driven(50_000, |desk| crate::cuts::cuts(desk, subjects, Plan::default())).rivals.remove(0);
     let (bound, all) = (found.bound.expect("a bound"), found.with_all.expect("a bound"));
@@ -284,7 +334,17 @@ fn few_classes_of_cuts_are_chosen_that_gain_most_of_what_all_gain() {
     assert!(found.chosen.len() <= found.classes.len());
     for class in &found.classes {
         assert!(class.added > 0 && !found.idle.contains(&class.class), "{class:?}");
+        assert!(!class.separation.is_empty() && !class.why.is_empty(), "{class:?}");
+        assert!(class.density.is_none_or(|share| share > 0.0 && share <= 1.0), "{class:?}");
     }
+    // As a rival with the cuts as rows: the bound that was promised, and no plan is lost.
+    let (made, _) = model::mps::read(&found.model).expect("a model");
+    assert_eq!(made.row_count(), rows + found.rows as usize);
+    let made = Rc::new(made);
+    let solved =
+        driven(50_000, |desk| async move { desk.solve(&made, Plan::default().search()).await });
+    assert!(close(solved.bound, Some(reached)), "{:?} for {reached}", solved.bound);
+    assert!(close(solved.incumbent, optimum), "{:?} for {optimum:?}", solved.incumbent);
 }
 
 #[test]

@@ -15,7 +15,7 @@ use record::study::{RivalVariability, Run, Variability, VariabilityPair};
 use crate::desk::{Desk, Solved};
 use crate::plan::Plan;
 use crate::statistics::{count, interval, resampled, shifted_geometric_mean};
-use crate::subject::{Source, Subject};
+use crate::subject::{Ground, Source, Subject};
 
 /// The shift of the geometric mean.
 const SHIFT: f64 = 1_000.0;
@@ -26,35 +26,48 @@ const TRIPS: [&str; 2] = ["atsp", "tsp"];
 /// Roots that are tried at most.
 const MOST_ROOTS: usize = 60;
 
-/// Searches each rival in several orders, and bounds it with each root.
-pub async fn variability(desk: Rc<Desk>, subjects: Vec<Subject>, plan: Plan) -> Variability {
+/// Searches each rival on each instance in several orders, and bounds it with each root of the first.
+pub async fn variability(desk: Rc<Desk>, grounds: Vec<Ground>, plan: Plan) -> Variability {
     let mut out = Variability { nodes: plan.nodes, orders: plan.orders, ..Variability::default() };
-    if let Some((name, used)) = subjects.iter().find_map(root) {
+    out.instances = u32::try_from(grounds.len()).unwrap_or(u32::MAX);
+    let first = grounds.first().map_or(&[][..], |ground| &ground.subjects);
+    if let Some((name, used)) = first.iter().find_map(root) {
         (out.root, out.root_used) = (name, used);
-        let stops = subjects.iter().filter_map(|subject| subject.source.as_ref());
+        let stops = first.iter().filter_map(|subject| subject.source.as_ref());
         let stops = stops.map(|source| source.instance.stops().len()).max();
         out.elements = stops.and_then(|stops| u32::try_from(stops).ok()).unwrap_or(u32::MAX);
     }
-    for subject in &subjects {
-        let mut rival = RivalVariability {
-            rival: subject.letter.clone(),
-            title: subject.title.clone(),
-            ..RivalVariability::default()
-        };
-        desk.say(format!("{}: as it is written", rival.rival));
-        rival.written = run(&desk.solve(&subject.model, plan.search()).await);
-        for order in 1..=plan.orders {
-            desk.say(format!("{}: order {order} of {}", rival.rival, plan.orders));
-            let seed = plan.seed.wrapping_mul(1_000_003).wrapping_add(u64::from(order));
-            let (model, _) = subject.model.reordered(|name| key(seed, name));
-            rival.runs.push(run(&desk.solve(&Rc::new(model), plan.search()).await));
+    for (place, ground) in grounds.iter().enumerate() {
+        for subject in &ground.subjects {
+            let mut rival = of_rival(&desk, subject, &plan).await;
+            rival.instance.clone_from(&ground.title);
+            if place == 0 {
+                rival.roots = roots(&desk, subject).await;
+            }
+            out.rivals.push(rival);
         }
-        rival.work = spread(&rival);
-        rival.roots = roots(&desk, subject).await;
-        out.rivals.push(rival);
     }
     out.pairs = pairs(&out.rivals, plan.seed);
     out
+}
+
+/// One rival on one instance in every order.
+async fn of_rival(desk: &Desk, subject: &Subject, plan: &Plan) -> RivalVariability {
+    let mut rival = RivalVariability {
+        rival: subject.letter.clone(),
+        title: subject.title.clone(),
+        ..RivalVariability::default()
+    };
+    desk.say(format!("{}: as it is written", rival.rival));
+    rival.written = run(&desk.solve(&subject.model, plan.search()).await);
+    for order in 1..=plan.orders {
+        desk.say(format!("{}: order {order} of {}", rival.rival, plan.orders));
+        let seed = plan.seed.wrapping_mul(1_000_003).wrapping_add(u64::from(order));
+        let (model, _) = subject.model.reordered(|name| key(seed, name));
+        rival.runs.push(run(&desk.solve(&Rc::new(model), plan.search()).await));
+    }
+    rival.work = spread(&rival);
+    rival
 }
 
 /// FNV-1a (Fowler, Noll, Vo 1991) over the seed and the name, with a last mixing of bits.
@@ -96,18 +109,37 @@ fn spread(rival: &RivalVariability) -> (f64, f64, f64) {
 }
 
 fn pairs(rivals: &[RivalVariability], seed: u64) -> Vec<VariabilityPair> {
+    let mut letters: Vec<&String> = Vec::new();
+    for rival in rivals {
+        if !letters.contains(&&rival.rival) {
+            letters.push(&rival.rival);
+        }
+    }
     let mut out = Vec::new();
-    for (place, a) in rivals.iter().enumerate() {
-        for b in &rivals[place + 1..] {
-            out.push(pair([a, b], seed));
+    for (place, a) in letters.iter().enumerate() {
+        for b in &letters[place + 1..] {
+            out.extend(pair([a, b], rivals, seed));
         }
     }
     out
 }
 
-fn pair([a, b]: [&RivalVariability; 2], seed: u64) -> VariabilityPair {
+/// Two rivals on every instance that both are a model on; `None` where there is none.
+fn pair([a, b]: [&String; 2], rivals: &[RivalVariability], seed: u64) -> Option<VariabilityPair> {
     let shifted = |run: &Run| libm::log(work(run) + SHIFT);
-    let logs: Vec<f64> = all(a).zip(all(b)).map(|(a, b)| shifted(b) - shifted(a)).collect();
+    let of = |letter: &String| -> Vec<&RivalVariability> {
+        rivals.iter().filter(|rival| rival.rival == *letter).collect()
+    };
+    let others = of(b);
+    let both: Vec<(&RivalVariability, &RivalVariability)> = of(a)
+        .into_iter()
+        .filter_map(|a| Some((a, *others.iter().find(|b| b.instance == a.instance)?)))
+        .collect();
+    let ratios = |(a, b): &(&RivalVariability, &RivalVariability)| -> Vec<f64> {
+        all(a).zip(all(b)).map(|(a, b)| shifted(b) - shifted(a)).collect()
+    };
+    let by_instance: Vec<Vec<f64>> = both.iter().map(ratios).collect();
+    let logs: Vec<f64> = by_instance.iter().flatten().copied().collect();
     let least = libm::log(TIE);
     let number = |of: &dyn Fn(f64) -> bool| {
         u32::try_from(logs.iter().filter(|log| of(**log)).count()).unwrap_or(u32::MAX)
@@ -116,25 +148,31 @@ fn pair([a, b]: [&RivalVariability; 2], seed: u64) -> VariabilityPair {
         (!logs.is_empty()).then(|| libm::exp(logs.iter().copied().sum::<f64>() / count(logs.len())))
     };
     let ratio = mean(&logs.iter().collect::<Vec<_>>()).unwrap_or(1.0);
-    let groups: Vec<Vec<f64>> = logs.iter().map(|&log| vec![log]).collect();
+    // Orders of one instance are not independent: of several, instances are drawn.
+    let groups: Vec<Vec<f64>> = if by_instance.len() > 1 {
+        by_instance
+    } else {
+        logs.iter().map(|&log| vec![log]).collect()
+    };
     // Each alone: how far its slowest run is from its quickest.
     let own = |rival: &RivalVariability| (rival.work.2 + SHIFT) / (rival.work.0 + SHIFT);
-    let noise = if own(a) > own(b) { own(a) } else { own(b) };
+    let alone = both.iter().flat_map(|(a, b)| [own(a), own(b)]);
+    let noise = alone.fold(1.0, |most, own| if own > most { own } else { most });
     let away = if ratio > 1.0 { ratio } else { 1.0 / ratio };
-    VariabilityPair {
-        rivals: [a.rival.clone(), b.rival.clone()],
+    (!both.is_empty()).then(|| VariabilityPair {
+        rivals: [a.clone(), b.clone()],
         wins: number(&|log| log > -least),
         ties: number(&|log| log.abs() <= -least),
         losses: number(&|log| log < least),
         ratio,
         interval: interval(resampled(&groups, seed, mean)).unwrap_or((ratio, ratio)),
         beyond_noise: away > noise,
-    }
+    })
 }
 
 /// The one stop that the instance names, with the name of the datum: the root of a round trip. Only
 /// where it is a matter of habit: supplied by the reader, or the depot of a shipped round trip.
-fn root(subject: &Subject) -> Option<(String, String)> {
+pub(crate) fn root(subject: &Subject) -> Option<(String, String)> {
     let instance = &subject.source.as_ref()?.instance;
     let mut elements = instance.data().filter_map(|(name, datum)| match datum {
         Datum::Element(used) => Some((name, used)),

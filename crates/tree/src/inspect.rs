@@ -230,6 +230,16 @@ impl Search {
         members.collect()
     }
 
+    /// The general cuts that are in the relaxation, in exact arithmetic, in the order in which they
+    /// stand there.
+    #[must_use]
+    pub fn cut_rows(&self) -> Vec<model::Row> {
+        let Some(relaxation) = &self.relaxation else { return Vec::new() };
+        let origins = relaxation.origins().iter().enumerate();
+        let cuts = origins.filter(|(_, origin)| matches!(origin, RowOrigin::Cut(..)));
+        cuts.filter_map(|(place, _)| relaxation.exact_row(place)).collect()
+    }
+
     /// The name of a row of the relaxation: `order[Ash → Birch]`, `subtour{Ash, Birch}`.
     fn row_name(&self, origin: &RowOrigin) -> String {
         match origin {

@@ -27,6 +27,11 @@ pub struct RivalCuts {
     /// Classes chosen one after the other, each the one that gains most beside those before it, until
     /// 90 % of what all gain is reached; with the bound after each.
     pub chosen: Vec<(String, f64)>,
+    /// The cuts of the chosen classes that are in the relaxation at the end.
+    pub rows: u32,
+    /// The model with these as rows of their own, in MPS; empty where there are none, or rows on demand
+    /// would be lost.
+    pub model: String,
 }
 
 /// What a class gains alone.
@@ -42,4 +47,14 @@ pub struct ClassGain {
     pub added: u32,
     /// Non-zeros touched.
     pub work: u64,
+    /// Cuts that are in the relaxation at the end: those that are slack are taken out again.
+    pub kept: u32,
+    /// The mean share of the columns that such a cut has an entry in, 0 to 1.
+    pub density: Option<f64>,
+    /// Whether its cuts are rather written up front than separated on demand.
+    pub up_front: bool,
+    /// Why, in a clause.
+    pub why: String,
+    /// How its cuts are found, in words.
+    pub separation: String,
 }

@@ -2,6 +2,7 @@
 
 use serde::{Deserialize, Serialize};
 
+use super::ConflictRow;
 use crate::results::SolutionEntry;
 
 /// The verdict on two rivals.
@@ -23,6 +24,8 @@ pub struct Equivalence {
     pub counterexample: Option<Counterexample>,
     /// Rivals broken on purpose: whether the court noticed.
     pub mutants: Vec<Mutant>,
+    /// Families that were not left out in turn, since there are too many.
+    pub mutants_untried: u32,
 }
 
 /// How far a verdict goes.
@@ -81,6 +84,15 @@ pub struct Counterexample {
     pub violated: Vec<String>,
     /// Its values under both objectives, where both admit it.
     pub values: Option<(f64, f64)>,
+    /// The elements of the sub-instance, its largest set; empty for the whole instance.
+    pub elements: Vec<String>,
+    /// The rows of the one that refuses it that cannot hold with it: one row where the plan breaks
+    /// it by itself, else rows that leave its further variables no value. Without a name where it has
+    /// no column for a part of the plan.
+    pub rows: Vec<ConflictRow>,
+    /// The plan of the one that refuses it that is nearest, every value other than 0: in the fewest
+    /// shared columns of 0 and 1 it is another. Empty where none was found.
+    pub nearest: Vec<SolutionEntry>,
 }
 
 /// A rival broken on purpose.

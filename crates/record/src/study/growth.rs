@@ -5,7 +5,8 @@ use serde::{Deserialize, Serialize};
 /// What a growth study found.
 #[derive(Debug, Clone, Default, PartialEq, Serialize, Deserialize)]
 pub struct Growth {
-    /// Where the instances come from: "generated: atsp" or "parts of the instance".
+    /// Where the instances come from: "generated: atsp", "parts of the instance" or "parts of 3
+    /// instances".
     pub data: String,
     /// Nodes at most for each run; a run that needs more counts as stopped there.
     pub nodes: u32,
@@ -37,6 +38,9 @@ pub struct Cell {
     pub rival: String,
     /// The size of the instance.
     pub size: u32,
+    /// The instance of the scenario of which it is a part; empty where there is one, or it is generated.
+    #[serde(default)]
+    pub instance: String,
     /// The class of its data; empty where it is a part of the scenario's own.
     pub class: String,
     /// Its seed.

@@ -12,6 +12,13 @@ pub struct Ladder {
     pub reference_from: String,
     /// The rivals in order.
     pub rivals: Vec<RivalLadder>,
+    /// The root of a round trip, which the bound of some formulations depends on: its name in the
+    /// instance; empty where there is none.
+    #[serde(default)]
+    pub root: String,
+    /// The element that it is.
+    #[serde(default)]
+    pub root_used: String,
 }
 
 /// One rival's ladder.

@@ -56,6 +56,9 @@ pub struct Order {
     /// What was proved row by row: that the left relaxation lies within the right one, and the
     /// other way round.
     pub certificates: [Certificate; 2],
+    /// Where the pair was looked at on several instances, and this is what they come to: the name of each
+    /// and the root bounds there.
+    pub over: Vec<(String, [Option<f64>; 2])>,
 }
 
 impl Default for Order {
@@ -67,6 +70,7 @@ impl Default for Order {
             source: String::new(),
             bounds: [None, None],
             certificates: [Certificate::default(), Certificate::default()],
+            over: Vec::new(),
         }
     }
 }

@@ -10,8 +10,11 @@ pub struct Variability {
     pub nodes: u32,
     /// Orders that were tried, the one as written not counted.
     pub orders: u32,
-    /// The rivals in order.
+    /// The rivals in order, instance by instance.
     pub rivals: Vec<RivalVariability>,
+    /// Over how many instances of the scenario it goes.
+    #[serde(default)]
+    pub instances: u32,
     /// Each pair of rivals under the same orders.
     pub pairs: Vec<VariabilityPair>,
     /// What the bounds below were varied over: the root of a round trip; empty where there is none.
@@ -30,13 +33,16 @@ pub struct RivalVariability {
     pub rival: String,
     /// Its title.
     pub title: String,
+    /// The instance; empty where the scenario has one.
+    #[serde(default)]
+    pub instance: String,
     /// As written.
     pub written: Run,
     /// Under each order.
     pub runs: Vec<Run>,
     /// Work: the least, the shifted geometric mean and the most, over all runs.
     pub work: (f64, f64, f64),
-    /// The bound of the relaxation with each element as the root.
+    /// The bound of the relaxation with each element as the root, on the first instance.
     pub roots: Vec<(String, Option<f64>)>,
 }
 

@@ -27,7 +27,12 @@ pub(super) fn conditions(evidence: &Evidence<'_>) -> Vec<String> {
     if !has("growth") {
         out.push("an instance of another size: growth was not studied".to_owned());
     }
-    out.push("another objective, other data or another choice of depot or root".to_owned());
+    let data = if evidence.scenario.instance.is_some() {
+        "another objective, other data or another choice of depot or root"
+    } else {
+        "another objective, or other data"
+    };
+    out.push(data.to_owned());
     out.dedup();
     out
 }

@@ -3,16 +3,17 @@
 use record::study::{ClassGain, CutAdvice, RivalCuts};
 
 use super::{Section, Table, and, value};
-use crate::number::{count, short};
+use crate::number::{count, percent, short};
 
 pub(super) fn sections(advice: &CutAdvice) -> Vec<Section> {
     advice.rivals.iter().map(of_rival).collect()
 }
 
 fn of_rival(rival: &RivalCuts) -> Section {
-    let mut table = Table::new(&["class", "bound", "gained", "cuts", "work"], &[0]);
+    let head = ["class", "bound", "gained", "cuts", "kept", "of the columns", "work", "rather"];
+    let mut table = Table::new(&head, &[0, 7]);
     table.rows = rival.classes.iter().map(row).collect();
-    let mut notes = Vec::new();
+    let mut notes: Vec<String> = rival.classes.iter().filter(|one| gains(one)).map(how).collect();
     if !rival.idle.is_empty() && !rival.classes.is_empty() {
         notes.push(format!("Nothing is found by {}.", and(&rival.idle)));
     }
@@ -25,13 +26,26 @@ fn of_rival(rival: &RivalCuts) -> Section {
     }
 }
 
+fn gains(class: &ClassGain) -> bool {
+    class.gained.is_some_and(|gained| gained > 0.0)
+}
+
+/// How the cuts of a class are found, and when they are best written.
+fn how(class: &ClassGain) -> String {
+    let when = if class.up_front { "up front" } else { "on demand" };
+    format!("{}, {when} ({}): {}.", class.class, class.why, class.separation)
+}
+
 fn row(class: &ClassGain) -> Vec<String> {
     vec![
         class.class.clone(),
         value(class.bound),
         value(class.gained),
         count(u64::from(class.added)),
+        count(u64::from(class.kept)),
+        class.density.map_or_else(|| "–".to_owned(), percent),
         count(class.work),
+        (if class.up_front { "up front" } else { "on demand" }).to_owned(),
     ]
 }
 

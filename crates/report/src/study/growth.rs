@@ -1,5 +1,7 @@
 //! The growth study in words.
 
+use std::collections::BTreeSet;
+
 use record::study::{Fit, Growth, GrowthPair, SizeMean};
 
 use super::{Section, Table};
@@ -36,6 +38,7 @@ fn sizes(growth: &Growth) -> Section {
     table.rows = growth.means.iter().map(mean).collect();
     let failed = growth.cells.iter().filter(|cell| !cell.failed.is_empty()).count();
     let mut notes = vec![MEANING.to_owned()];
+    notes.extend(sources(growth));
     if failed > 0 {
         notes.push(format!("{} gave no result: no model of that size.", of(failed as u64, "run")));
     }
@@ -49,6 +52,25 @@ fn sizes(growth: &Growth) -> Section {
         verdict: growth.pairs.iter().map(|pair| verdict(pair, "work")).collect(),
         table: Some(table),
         notes,
+    }
+}
+
+/// Of what the intervals speak.
+fn sources(growth: &Growth) -> Option<String> {
+    let instances: BTreeSet<&String> = growth.cells.iter().map(|cell| &cell.instance).collect();
+    let own = growth.cells.iter().all(|cell| cell.class.is_empty());
+    match instances.len() {
+        _ if !own => None,
+        0 => None,
+        1 => Some(
+            "All are parts of one instance: the intervals say how its parts scatter, and nothing of \
+             other instances."
+                .to_owned(),
+        ),
+        many => Some(format!(
+            "Parts of one instance are drawn together when the interval is made: it rests on {}.",
+            of(many as u64, "instance")
+        )),
     }
 }
 

@@ -30,6 +30,8 @@ pub struct Figure {
 /// Rivals of equal strength, and the lines between them.
 struct Diagram {
     classes: Vec<Vec<String>>,
+    /// How far it is known that those of a class are equal; nothing where all stand alone.
+    equal: Option<OrderLevel>,
     /// From the stronger to the weaker, by place.
     lines: Vec<(usize, usize, OrderLevel)>,
 }
@@ -115,8 +117,13 @@ impl Diagram {
         }
         let whole = lines.clone();
         lines.retain(|line| !follows(&whole, *line));
-        (orders.len() > 1 || !lines.is_empty() || classes.len() == 1)
-            .then_some(Self { classes, lines })
+        let equal = orders.iter().filter(|order| order.relation == Relation::Equal);
+        let equal = equal.map(|order| order.level).max_by_key(|level| rank(*level));
+        (orders.len() > 1 || !lines.is_empty() || classes.len() == 1).then_some(Self {
+            classes,
+            equal,
+            lines,
+        })
     }
 
     fn name(&self, class: usize) -> String {
@@ -130,7 +137,10 @@ impl Diagram {
         };
         let lines: Vec<String> = self.lines.iter().map(line).collect();
         match lines.as_slice() {
-            [] if self.classes.len() == 1 => format!("{}.", self.name(0)),
+            [] if self.classes.len() == 1 => match self.equal {
+                Some(level) => format!("{} ({}).", self.name(0), word(level)),
+                None => format!("{}.", self.name(0)),
+            },
             [] => "No line can be drawn: none is known to be above another.".to_owned(),
             lines => format!("{}.", and(lines)),
         }

@@ -11,6 +11,13 @@ pub(super) fn sections(ladder: &Ladder) -> Vec<Section> {
         let from = &ladder.reference_from;
         first.verdict.insert(0, format!("Gaps are closed towards {} ({from}).", short(reference)));
     }
+    if let (Some(first), false) = (sections.first_mut(), ladder.root.is_empty()) {
+        first.notes.push(format!(
+            "The root of the round trip is {} = {}. The bounds of labels and of one-commodity flow depend \
+             on which stop it is, that of subtours does not: the study of variability tries the others.",
+            ladder.root, ladder.root_used
+        ));
+    }
     sections
 }
 

@@ -1,12 +1,19 @@
 //! The strength order in words.
 
+mod over;
+
 use record::study::{Certificate, Order, OrderLevel, Relation};
 
 use super::{Section, Table, value};
 use crate::number::{of, short};
 
+pub use over::over_instances;
+
 pub(super) fn section(order: &Order) -> Section {
     let [a, b] = &order.rivals;
+    if !order.over.is_empty() {
+        return on_all(order);
+    }
     let mut table = Table::new(&["", "root bound", "rows proved over it"], &[0, 2]);
     table.rows = (0..2)
         .map(|side| {
@@ -47,7 +54,7 @@ fn rows(certificate: &Certificate, other: &str) -> String {
                 .map_or_else(|| "without end".to_owned(), |by| format!("by {}", short(by)));
             format!("not {} of {other}: it can be violated {by}", certificate.witness)
         }
-        None => format!("not tried: {}", certificate.why),
+        None => format!("not shown: {}", certificate.why),
     }
 }
 
@@ -70,6 +77,32 @@ fn verdict(order: &Order) -> String {
         }
         OrderLevel::Observed => observed(order),
         OrderLevel::Undecided => format!("{relation}."),
+    }
+}
+
+/// What several instances come to.
+fn on_all(order: &Order) -> Section {
+    let [a, b] = &order.rivals;
+    let mut table = Table::new(&["instance", a, b], &[0]);
+    let row = |(name, bounds): &(String, [Option<f64>; 2])| {
+        vec![name.clone(), value(bounds[0]), value(bounds[1])]
+    };
+    table.rows = order.over.iter().map(row).collect();
+    let number = of(order.over.len() as u64, "instance");
+    let what = match order.relation {
+        Relation::Equal => format!("{a} and {b} have the same bound"),
+        Relation::NeverWeaker => format!("{a} is never weaker than {b}"),
+        Relation::NeverStronger => format!("{b} is never weaker than {a}"),
+        Relation::Incomparable => {
+            format!("Neither of {a} and {b} is always as strong as the other")
+        }
+        Relation::Undecided => format!("How {a} stands to {b} is undecided"),
+    };
+    Section {
+        heading: format!("Which of {a} and {b} is stronger over all instances?"),
+        verdict: vec![format!("{what} – observed on {number}: {}.", order.source)],
+        table: Some(table),
+        ..Section::default()
     }
 }
 

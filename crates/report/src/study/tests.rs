@@ -55,14 +55,24 @@ fn a_verdict_says_how_far_it_goes() {
             equivalent,
             level,
             kind,
+            shared: vec![("x".to_owned(), 12)],
             ..Equivalence::default()
         };
         verdict_of(&Report::Equivalence(Box::new(verdict)))
     };
     let sets = EquivalenceKind::Sets;
-    assert!(said(Some(true), EquivalenceLevel::Unrefuted, sets).contains("nothing that was tried"));
+    assert!(said(Some(true), EquivalenceLevel::Unrefuted, sets).contains("Nothing that was tried"));
     assert!(said(Some(true), EquivalenceLevel::Enumerated, sets).contains("sub-instances"));
     assert!(said(None, EquivalenceLevel::Unrefuted, sets).contains("undecided"));
     let own = said(Some(true), EquivalenceLevel::Unrefuted, EquivalenceKind::ThisObjective);
     assert!(own.contains("do not admit the same plans"), "{own}");
+    // Two models that name no column alike: nothing is said of their plans.
+    let strangers = Equivalence {
+        rivals: ["A".to_owned(), "B".to_owned()],
+        equivalent: Some(true),
+        kind: EquivalenceKind::ThisObjective,
+        ..Equivalence::default()
+    };
+    let said = verdict_of(&Report::Equivalence(Box::new(strangers)));
+    assert!(said.contains("whether they admit the same plans is not known"), "{said}");
 }

@@ -1,6 +1,7 @@
 //! Tightening in words.
 
-use record::study::{FamilyTightening, RivalTightening, Tightening};
+use record::results::SolutionEntry;
+use record::study::{FamilyTightening, RivalTightening, Tightening, TooSmall};
 
 use super::{Section, Table, value};
 use crate::number::{count, of, short};
@@ -16,11 +17,16 @@ fn of_rival(rival: &RivalTightening) -> Section {
             vec!["No row is switched by a binary with the largest coefficient.".to_owned()];
         return Section { heading, verdict, ..Section::default() };
     }
-    let head = ["family", "rows", "largest", "by the data", "rows", "by the relaxation", "rows"];
+    let mut head =
+        vec!["family", "rows", "largest", "by the data", "rows", "by the relaxation", "rows"];
+    if rival.cutoff.is_some() {
+        head.extend(["with the cut-off", "rows"]);
+    }
     let mut table = Table::new(&head, &[0]);
-    table.rows = rival.families.iter().map(row).collect();
+    table.rows = rival.families.iter().map(|family| row(family, rival.cutoff)).collect();
     let examples = rival.families.iter().filter(|family| !family.example.is_empty());
     let mut notes: Vec<String> = examples.map(|family| format!("{}.", family.example)).collect();
+    notes.extend(rival.too_small.iter().map(too_small));
     if rival.left_out > 0 {
         notes.push(format!(
             "{} not looked at, for the limit of {}.",
@@ -28,11 +34,81 @@ fn of_rival(rival: &RivalTightening) -> Section {
             count(u64::from(rival.rows))
         ));
     }
-    Section { heading, verdict: vec![verdict(rival)], figure: None, table: Some(table), notes }
+    let verdict = std::iter::once(verdict(rival)).chain(beside(rival)).collect();
+    Section { heading, verdict, figure: None, table: Some(table), notes }
 }
 
-fn row(family: &FamilyTightening) -> Vec<String> {
-    vec![
+/// What smaller coefficients do to their range, and what the cut-off adds.
+fn beside(rival: &RivalTightening) -> Vec<String> {
+    let mut out = Vec::new();
+    let ((low, high), (low_after, high_after)) = (rival.range, rival.range_after);
+    if rival.range != rival.range_after {
+        out.push(format!(
+            "Coefficients of its rows range from {} to {}; then from {} to {}.",
+            short(low),
+            short(high),
+            short(low_after),
+            short(high_after)
+        ));
+    }
+    let by_cutoff: u32 = rival.families.iter().map(|family| family.tightened_by_cutoff).sum();
+    let by_relaxation: u32 =
+        rival.families.iter().map(|family| family.tightened_by_relaxation).sum();
+    if let (Some(cutoff), Some(bound)) = (rival.cutoff, rival.bound_by_cutoff)
+        && (by_cutoff > by_relaxation || rival.bound_by_cutoff != rival.bound_by_relaxation)
+    {
+        out.push(format!(
+            "With the cut-off {} the bound is {}: this keeps an optimum only, plans that are worse may be \
+             lost.",
+            short(cutoff),
+            short(bound)
+        ));
+    }
+    if rival.bounds > 0 {
+        let by = match rival.bounds_by_relaxation {
+            0 => String::new(),
+            some => format!(", {} of them by the relaxation alone", count(u64::from(some))),
+        };
+        out.push(format!(
+            "{} of columns can be tighter{by}.",
+            of(u64::from(rival.bounds), "bound")
+        ));
+    }
+    out
+}
+
+/// Entries of a plan that are written out at most.
+const MOST_VALUES: usize = 12;
+
+/// That a row cuts off a plan though its binary opens it.
+fn too_small(found: &TooSmall) -> String {
+    let value = |entry: &SolutionEntry| match entry.indices.as_slice() {
+        [] => format!("{} = {}", entry.variable, short(entry.value)),
+        some => format!("{}[{}] = {}", entry.variable, some.join(", "), short(entry.value)),
+    };
+    let mut plan: Vec<String> = found.plan.iter().take(MOST_VALUES).map(value).collect();
+    let more = found.plan.len().saturating_sub(MOST_VALUES);
+    if more > 0 {
+        plan.push(format!("and {} more", count(more as u64)));
+    }
+    format!(
+        "{} is more than a switch ({}): with {} = {}, which opens it, the rest may be at most {}, and in a \
+         plan that every other row admits it is {}. If it is meant to switch alone, {} is too small and {} \
+         is needed; the plan that it cuts off: {}.",
+        found.row,
+        found.says,
+        found.switch,
+        short(found.open),
+        short(found.allows),
+        short(found.reaches),
+        short(found.coefficient),
+        short(found.needs),
+        plan.join(", ")
+    )
+}
+
+fn row(family: &FamilyTightening, cutoff: Option<f64>) -> Vec<String> {
+    let mut row = vec![
         family.name.clone(),
         count(u64::from(family.rows)),
         short(family.largest),
@@ -40,7 +116,12 @@ fn row(family: &FamilyTightening) -> Vec<String> {
         count(u64::from(family.tightened_by_data)),
         short(family.largest_by_relaxation),
         count(u64::from(family.tightened_by_relaxation)),
-    ]
+    ];
+    if cutoff.is_some() {
+        row.push(short(family.largest_by_cutoff));
+        row.push(count(u64::from(family.tightened_by_cutoff)));
+    }
+    row
 }
 
 fn verdict(rival: &RivalTightening) -> String {

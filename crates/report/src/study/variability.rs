@@ -19,7 +19,8 @@ fn orders(report: &Variability) -> Section {
     let mut table = Table::new(&head, &[0]);
     table.rows = report.rivals.iter().map(row).collect();
     let mut verdict: Vec<String> = report.rivals.iter().map(spread).collect();
-    verdict.extend(report.pairs.iter().map(|pair| paired(pair, report.orders + 1)));
+    let runs = (report.orders + 1) * report.instances.max(1);
+    verdict.extend(report.pairs.iter().map(|pair| paired(pair, runs)));
     Section {
         figure: None,
         heading: format!(
@@ -29,10 +30,28 @@ fn orders(report: &Variability) -> Section {
         ),
         verdict,
         table: Some(table),
-        notes: vec![
-            "The same names stand in the same order in every rival. Work is non-zeros touched."
-                .to_owned(),
-        ],
+        notes: notes(report),
+    }
+}
+
+fn notes(report: &Variability) -> Vec<String> {
+    let order = "The same names stand in the same order in every rival. Work is non-zeros touched.";
+    let mut notes = vec![order.to_owned()];
+    if report.instances > 1 {
+        notes.push(format!(
+            "Orders of one instance are drawn together when the interval is made: it rests on {}.",
+            of(u64::from(report.instances), "instance")
+        ));
+    }
+    notes
+}
+
+/// The letter of a rival, and the instance where there are several.
+fn named(rival: &RivalVariability) -> String {
+    if rival.instance.is_empty() {
+        rival.rival.clone()
+    } else {
+        format!("{} on {}", rival.rival, rival.instance)
     }
 }
 
@@ -45,7 +64,7 @@ fn row(rival: &RivalVariability) -> Vec<String> {
     let whole = |number: u32| count(u64::from(number));
     let stopped = all(rival).filter(|run| !run.solved).count();
     vec![
-        format!("{} {}", rival.rival, rival.title),
+        format!("{} {}", named(rival), rival.title),
         whole(rival.written.nodes),
         whole(nodes().min().unwrap_or(0)),
         whole(nodes().max().unwrap_or(0)),
@@ -60,7 +79,7 @@ fn spread(rival: &RivalVariability) -> String {
     let factor = if rival.work.0 > 0.0 { rival.work.2 / rival.work.0 } else { 1.0 };
     format!(
         "{}: the same model in another order takes up to {} times the work.",
-        rival.rival,
+        named(rival),
         short(factor)
     )
 }
@@ -75,14 +94,15 @@ fn paired(pair: &VariabilityPair, orders: u32) -> String {
     };
     format!(
         "{b} takes {ratio} times the work of {a} (95 % interval {low} to {high}), {noise}; {a} is ahead \
-         in {} of {orders} orders, {b} in {}.",
+         in {} of {orders} runs, {b} in {}.",
         pair.wins, pair.losses
     )
 }
 
 fn roots(report: &Variability) -> Section {
     let mut head = vec!["root"];
-    head.extend(report.rivals.iter().map(|rival| rival.rival.as_str()));
+    let with_roots = || report.rivals.iter().filter(|rival| !rival.roots.is_empty());
+    head.extend(with_roots().map(|rival| rival.rival.as_str()));
     let mut table = Table::new(&head, &[0]);
     let first = report.rivals.iter().find(|rival| rival.roots.len() > 1);
     for (root, _) in first.map_or(&[][..], |rival| &rival.roots) {
@@ -91,7 +111,7 @@ fn roots(report: &Variability) -> Section {
         };
         let used = if *root == report.root_used { " (used)" } else { "" };
         let mut row = vec![format!("{root}{used}")];
-        row.extend(report.rivals.iter().map(bound));
+        row.extend(with_roots().map(bound));
         table.rows.push(row);
     }
     Section {

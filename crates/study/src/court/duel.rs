@@ -17,7 +17,7 @@ use crate::words::{of, same};
 /// Nodes at most for each side of a duel: many small ones tell more than a few large ones.
 const NODES: u32 = 400;
 /// Costs are whole numbers up to this.
-const LARGEST: i64 = 50;
+pub(super) const LARGEST: i64 = 50;
 
 /// What a duel came to.
 pub(crate) enum Duel {
@@ -112,12 +112,11 @@ impl Case<'_> {
         let (own, other) = (self.rivals[better], self.rivals[1 - better]);
         match plans::place(self, &plan, 1 - better).await {
             Outcome::Refused(violated) => Duel::Differ(Counterexample {
-                size: None,
                 admitted_by: own.letter.clone(),
                 refused_by: other.letter.clone(),
                 plan: plan.entries(&own.model, better),
                 violated,
-                values: None,
+                ..Counterexample::default()
             }),
             Outcome::Value(_) | Outcome::Open => Duel::Open,
         }

@@ -189,12 +189,11 @@ impl Case<'_> {
 
     fn example(&self, plan: &Placed, violated: Vec<String>, from: usize) -> Counterexample {
         Counterexample {
-            size: None,
             admitted_by: self.rivals[from].letter.clone(),
             refused_by: self.rivals[1 - from].letter.clone(),
             plan: plan.entries(&self.rivals[from].model, from),
             violated,
-            values: None,
+            ..Counterexample::default()
         }
     }
 
@@ -225,7 +224,7 @@ impl Case<'_> {
 }
 
 /// The model with its deciding columns whole between 0 and 1 where the other rival says so.
-fn restricted(
+pub(super) fn restricted(
     model: &Model,
     deciding: &[(ColumnId, ColumnId)],
     own: impl Fn(&(ColumnId, ColumnId)) -> ColumnId,

@@ -8,6 +8,7 @@
 
 mod duel;
 mod enumerate;
+mod example;
 mod mutants;
 mod plans;
 mod rows;
@@ -54,6 +55,8 @@ pub(crate) struct Findings {
     pub(crate) same_optimum: Option<bool>,
     /// Whether a plan of one is none of the other, or is valued otherwise.
     pub(crate) plans_differ: bool,
+    /// Whether they have no variable in common, so that no plan of one can be put into the other.
+    pub(crate) no_names: bool,
     /// Whether optima under non-negative costs differ; `None` where that was not tried.
     pub(crate) costs_differ: Option<bool>,
     /// The largest sub-instance of which all plans were compared.
@@ -98,6 +101,7 @@ impl<'s> Case<'s> {
         if self.shared.pairs.is_empty() {
             let outcome = "they share no variable: only their optima can be compared".to_owned();
             findings.note("shared variables", outcome, None, 0);
+            findings.no_names = true;
         } else {
             self.duels(&mut findings).await;
             self.enumerations(&mut findings).await;
@@ -105,10 +109,11 @@ impl<'s> Case<'s> {
                 self.rows(&mut findings).await;
             }
         }
-        let mutants = if self.plan.mutants && !self.shared.pairs.is_empty() {
+        self.told(&mut findings).await;
+        let (mutants, mutants_untried) = if self.plan.mutants && !self.shared.pairs.is_empty() {
             self.mutants(&findings).await
         } else {
-            Vec::new()
+            (Vec::new(), 0)
         };
         let (equivalent, level, kind) = verdict::verdict(&findings);
         let [a, b] = self.rivals;
@@ -121,6 +126,7 @@ impl<'s> Case<'s> {
             evidence: findings.evidence,
             counterexample: findings.counterexample,
             mutants,
+            mutants_untried,
         }
     }
 
@@ -184,12 +190,12 @@ impl<'s> Case<'s> {
                 _ => Vec::new(),
             };
             findings.differs(Counterexample {
-                size: None,
                 admitted_by: own.letter.clone(),
                 refused_by: other.letter.clone(),
                 plan: plan.entries(&own.model, from),
                 violated,
                 values,
+                ..Counterexample::default()
             });
         }
     }

@@ -13,21 +13,26 @@ use crate::subject::Subject;
 
 /// Duels in which a mutant must show itself where not every plan can be compared.
 const DUELS: u64 = 4;
+/// Families of a rival that are left out in turn; of more, as many are taken evenly among them.
+const MOST_FAMILIES: usize = 16;
 
 impl Case<'_> {
-    /// Breaks both rivals, family by family.
-    pub(crate) async fn mutants(&self, findings: &Findings) -> Vec<Mutant> {
+    /// Breaks both rivals, family by family; with how many families were passed over.
+    pub(crate) async fn mutants(&self, findings: &Findings) -> (Vec<Mutant>, u32) {
         let parts = match findings.control {
             Some(size) => self.first(size).await,
             None => None,
         };
-        let mut out = Vec::new();
+        let (mut out, mut untried) = (Vec::new(), 0);
         for side in [0, 1] {
             let families = self.rivals[side].model.families();
-            for (place, family) in families.iter().enumerate() {
-                if family.state == FamilyState::Out {
-                    continue;
-                }
+            let held = |place: &usize| families[*place].state != FamilyState::Out;
+            let all: Vec<usize> = (0..families.len()).filter(held).collect();
+            let tried = all.len().min(MOST_FAMILIES);
+            untried += u32::try_from(all.len() - tried).unwrap_or(u32::MAX);
+            for number in 0..tried {
+                let place = all[number * all.len() / tried];
+                let family = &families[place];
                 let letter = &self.rivals[side].letter;
                 self.say(&format!("{letter} without {}", family.name));
                 let (caught, by) = self.mutant(side, FamilyId::from_index(place), &parts).await;
@@ -35,7 +40,7 @@ impl Case<'_> {
                 out.push(Mutant { rival, without, caught, by });
             }
         }
-        out
+        (out, untried)
     }
 
     async fn mutant(

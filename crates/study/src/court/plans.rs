@@ -7,7 +7,7 @@ use record::results::SolutionEntry;
 use tree::{Conflict, ConflictLimits, Status};
 
 use super::Case;
-use crate::lift::{held, rounded};
+use crate::lift::{entry, held};
 use crate::shared::Shared;
 
 /// Values within so much of a whole number are that number.
@@ -48,18 +48,9 @@ impl Placed {
     /// The plan as results print it, every value other than 0, in the names of the rival at `side`.
     pub(crate) fn entries(&self, model: &Model, side: usize) -> Vec<SolutionEntry> {
         let own = |pair: &(ColumnId, ColumnId)| if side == 0 { pair.0 } else { pair.1 };
-        let entry = |column: ColumnId, value: f64| {
-            let labels = model.column_tuple(column).iter();
-            let variable = model.columns()[column.index()].variable;
-            SolutionEntry {
-                variable: model.variables()[variable.index()].name.clone(),
-                indices: labels.map(|&label| model.labels().name(label).to_owned()).collect(),
-                value: rounded(value),
-            }
-        };
         let shared = self.values.iter().filter(|(_, value)| value.abs() > WHOLE);
-        let shared = shared.map(|(pair, value)| entry(own(pair), *value));
-        shared.chain(self.beyond.iter().map(|&column| entry(column, 1.0))).collect()
+        let shared = shared.map(|(pair, value)| entry(model, own(pair), *value));
+        shared.chain(self.beyond.iter().map(|&column| entry(model, column, 1.0))).collect()
     }
 }
 

@@ -99,7 +99,10 @@ impl Case<'_> {
         let mut maximiser = Maximiser::new(self.desk, &own.model);
         let (mut by_relaxation, mut by_search) = (0, 0);
         for claim in &claims {
-            let most = maximiser.most(&claim.entries, &claim.side).await;
+            let most = match maximiser.as_written(&claim.entries, &claim.side) {
+                Some(most) => most,
+                None => maximiser.most(&claim.entries, &claim.side).await,
+            };
             if most.proof.is_some_and(|(_, bound)| bound <= claim.side) {
                 by_relaxation += 1;
                 continue;
@@ -135,12 +138,11 @@ impl Case<'_> {
                 };
                 Some(Held::Broken(
                     Box::new(Counterexample {
-                        size: None,
                         admitted_by: own.letter.clone(),
                         refused_by: other.letter.clone(),
                         plan: plan.entries(&own.model, inner),
                         violated: vec![claim.name.clone()],
-                        values: None,
+                        ..Counterexample::default()
                     }),
                     claim.name.clone(),
                 ))

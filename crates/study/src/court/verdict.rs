@@ -16,6 +16,9 @@ pub(super) fn verdict(findings: &Findings) -> (Option<bool>, Level, Kind) {
     if findings.same_optimum == Some(false) {
         return (Some(false), Level::Proved, Kind::ThisObjective);
     }
+    if findings.no_names {
+        return (findings.same_optimum, Level::Unrefuted, Kind::ThisObjective);
+    }
     if !findings.plans_differ {
         let anything = findings.evidence.iter().any(|evidence| evidence.agrees == Some(true));
         return (anything.then_some(true), tried, Kind::Sets);
@@ -52,6 +55,9 @@ mod tests {
         assert_eq!(verdict(&own), (Some(true), Level::Unrefuted, Kind::ThisObjective));
         let other = Findings { same_optimum: Some(false), ..findings() };
         assert_eq!(verdict(&other), (Some(false), Level::Proved, Kind::ThisObjective));
+        // Without a variable in common nothing is known of their plans.
+        let strangers = Findings { no_names: true, ..findings() };
+        assert_eq!(verdict(&strangers), (Some(true), Level::Unrefuted, Kind::ThisObjective));
         assert_eq!(verdict(&Findings::default()).0, None);
     }
 }

@@ -20,7 +20,8 @@ const ROUNDING: f64 = 1e-12;
 /// Where the performance profile is looked at.
 const FACTORS: [f64; 7] = [1.0, 1.5, 2.0, 4.0, 8.0, 16.0, 64.0];
 
-type Instance = (u32, String, u64);
+/// Size, the instance of which it is a part, class and seed.
+type Instance = (u32, String, String, u64);
 
 /// The study with its means, pairs, fits and profile worked out from its cells.
 #[must_use]
@@ -49,10 +50,19 @@ fn rivals(cells: &[Cell]) -> Vec<String> {
 fn by_instance(cells: &[Cell]) -> BTreeMap<Instance, BTreeMap<String, Cell>> {
     let mut table: BTreeMap<Instance, BTreeMap<String, Cell>> = BTreeMap::new();
     for cell in cells.iter().filter(|cell| cell.failed.is_empty()) {
-        let instance = (cell.size, cell.class.clone(), cell.seed);
-        table.entry(instance).or_default().insert(cell.rival.clone(), cell.clone());
+        table.entry(instance(cell)).or_default().insert(cell.rival.clone(), cell.clone());
     }
     table
+}
+
+fn instance(cell: &Cell) -> Instance {
+    (cell.size, cell.instance.clone(), cell.class.clone(), cell.seed)
+}
+
+/// What is drawn together when it is resampled: parts of one instance are not independent. Of several
+/// instances each is a source; of one the seeds are, which say nothing of other instances.
+fn source((_, instance, class, seed): &Instance) -> (String, u64) {
+    if instance.is_empty() { (class.clone(), *seed) } else { (instance.clone(), 0) }
 }
 
 fn work(cell: &Cell) -> f64 {
@@ -98,8 +108,7 @@ fn gap(own: &[&Cell], table: &BTreeMap<Instance, BTreeMap<String, Cell>>) -> Opt
     let gaps: Vec<f64> = own
         .iter()
         .filter_map(|cell| {
-            let instance = (cell.size, cell.class.clone(), cell.seed);
-            let solved = table.get(&instance)?.values().find(|cell| cell.solved)?;
+            let solved = table.get(&instance(cell))?.values().find(|cell| cell.solved)?;
             let best = solved.incumbent.filter(|best| *best != 0.0)?;
             let gap = (best - cell.bound?).abs() / best.abs();
             Some(if gap < ROUNDING { 0.0 } else { gap })
@@ -147,7 +156,7 @@ fn pair(
     let mut out =
         GrowthPair { rivals: rivals.map(Clone::clone), ratio: 1.0, ..GrowthPair::default() };
     let (mut sum, least) = (0.0, libm::log(TIE));
-    for ((_, class, source), cells) in table {
+    for (place, cells) in table {
         let Some((log, censored)) = ratio(cells, rivals) else { continue };
         sum += log;
         out.instances += 1;
@@ -157,8 +166,7 @@ fn pair(
             () if log < least => out.losses += 1,
             () => out.ties += 1,
         }
-        // Parts of one instance by one seed are not independent: they are drawn together.
-        groups.entry((class.clone(), *source)).or_default().push(log);
+        groups.entry(source(place)).or_default().push(log);
     }
     if out.instances > 0 {
         out.ratio = libm::exp(sum / f64::from(out.instances));
@@ -184,7 +192,7 @@ fn fit(growth: &Growth, rival: &str) -> Option<Fit> {
     let mut sizes = Vec::new();
     for cell in own {
         let point = (f64::from(cell.size), libm::log(work(cell) + 1.0));
-        groups.entry((cell.class.clone(), cell.seed)).or_default().push(point);
+        groups.entry(source(&instance(cell))).or_default().push(point);
         sizes.push(cell.size);
     }
     sizes.sort_unstable();

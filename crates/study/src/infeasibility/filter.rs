@@ -14,28 +14,28 @@ const SLICE: u64 = 200_000;
 
 /// What is dropped at once: a written row, or a family on demand with all its rows.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
-pub(super) enum Part {
+pub(crate) enum Part {
     Row(RowId),
     Family(FamilyId),
 }
 
-pub(super) struct Filter<'f> {
+pub(crate) struct Filter<'f> {
     desk: &'f Desk,
     model: &'f Rc<Model>,
     plan: &'f Plan,
     /// Whether whole points are asked for.
     whole: bool,
     /// Models solved.
-    pub(super) solved: u32,
+    pub(crate) solved: u32,
 }
 
 impl<'f> Filter<'f> {
-    pub(super) fn new(desk: &'f Desk, model: &'f Rc<Model>, plan: &'f Plan, whole: bool) -> Self {
+    pub(crate) fn new(desk: &'f Desk, model: &'f Rc<Model>, plan: &'f Plan, whole: bool) -> Self {
         Self { desk, model, plan, whole, solved: 0 }
     }
 
     /// Parts that cannot hold together, and whether each was shown to be needed.
-    pub(super) async fn filtered(&mut self, solved: &Solved, letter: &str) -> (Vec<Part>, bool) {
+    pub(crate) async fn filtered(&mut self, solved: &Solved, letter: &str) -> (Vec<Part>, bool) {
         let mut kept = self.first(solved).await;
         let (mut piece, mut open) = (0, false);
         loop {
@@ -129,7 +129,7 @@ impl<'f> Filter<'f> {
     }
 
     /// Whether exact arithmetic proves that these parts have no point.
-    pub(super) async fn is_proved(&mut self, parts: &[Part]) -> bool {
+    pub(crate) async fn is_proved(&mut self, parts: &[Part]) -> bool {
         let solved = self.solve(parts).await;
         solved.checked && solved.is_infeasible()
     }

@@ -11,13 +11,18 @@ use record::study::{Cell, Growth, Report};
 
 use crate::complain::complain;
 use crate::ending::Ending;
-use crate::options::GatherOptions;
+use crate::options::{CellsOptions, GatherOptions};
+use crate::queue;
 use crate::source;
 use crate::table;
 
-/// Lists the cells of a scenario.
-pub(crate) fn list(word: &str, out: &mut dyn Write, err: &mut dyn Write) -> Result<Ending> {
-    let source = match source::load(word) {
+/// Lists the cells of a scenario, or writes the script by which a batch queue makes them.
+pub(crate) fn list(
+    options: &CellsOptions,
+    out: &mut dyn Write,
+    err: &mut dyn Write,
+) -> Result<Ending> {
+    let source = match source::load(&options.file) {
         Ok(source) => source,
         Err(message) => return writeln!(err, "{message}").map(|()| Ending::Wrong),
     };
@@ -28,6 +33,10 @@ pub(crate) fn list(word: &str, out: &mut dyn Write, err: &mut dyn Write) -> Resu
         Ok(found) => found,
         Err(why) => return writeln!(err, "{}: {why}", source.name).map(|()| Ending::Wrong),
     };
+    if let Some(wanted) = options.queue {
+        write!(out, "{}", queue::script(wanted, &options.file, count))?;
+        return Ok(Ending::Done);
+    }
     for cell in 0..count {
         writeln!(out, "{cell}")?;
     }

@@ -110,7 +110,7 @@ programs may read otherwise; as a rival (mps = '''…''') it needs no instance.
 ";
 
 const WRITE: &str = "\
-hullward write FILE --as FORM [--rival LETTER] [--instance N] [-o OUT]
+hullward write FILE --as FORM [--rival LETTER] [--instance N] [--scale FACTOR] [-o OUT]
 
 Hands over a rival of a scenario, to OUT or to standard output; what who takes it
 should know goes to standard error.
@@ -129,8 +129,13 @@ should know goes to standard error.
                   written as one HTML file that prints
   --as markdown   the same record as Markdown
   --as csv        the scenario is run and its results written as a table
+  --as json       the record as one JSON object with its results and studies
+  --as svg        the drawings of the record as one SVG
   --as pack       the scenario is run and written with its results as one JSON
                   object, for hullward drift
+  --as stripped   the scenario to share: labels, titles and notes are replaced, and
+                  every rival is compared with what it was before
+  --scale FACTOR  with stripped: costs of the objective are multiplied by it
   --rival LETTER  which rival; a scenario or link without it holds them all
   --instance N    which of several instances (1 unless given)
 ";
@@ -157,19 +162,16 @@ scenario's limits of nodes and iterations.
 ";
 
 const CELLS: &str = "\
-hullward cells FILE
+hullward cells FILE [--job QUEUE]
 
-Lists the cells of a scenario's growth study, one number and what it runs a line. Each
-cell is a run of its own, so that any batch queue can make them, in any order:
+Lists the cells of a scenario's growth study, a number a line. Each cell is a run of
+its own, so that any batch queue can make them, in any order:
 
-  seq 0 $(($(hullward cells study.toml | wc -l) - 1)) |
-    parallel 'hullward run --cell {} study.toml > cell-{}.json'
+  hullward cells study.toml | parallel 'hullward run --cell {} study.toml > cell-{}.json'
   hullward gather cell-*.json
 
-or, as an array job of Slurm, with the header
-
-  #SBATCH --array=0-59
-  hullward run --cell $SLURM_ARRAY_TASK_ID study.toml > cell-$SLURM_ARRAY_TASK_ID.json
+  --job slurm     the script of an array job of Slurm, with its header, for sbatch
+  --job parallel  a script that makes all cells by GNU parallel and gathers them
 ";
 
 const GATHER: &str = "\

@@ -15,6 +15,7 @@ mod options;
 mod pack;
 mod progress;
 mod prove;
+mod queue;
 mod read;
 mod record;
 mod run;
@@ -62,7 +63,7 @@ fn carry_out(call: &Call, out: &mut dyn Write, err: &mut dyn Write) -> std::io::
         Call::Prove(options) => prove::prove(options, out, err),
         Call::List(id) => list::list(id.as_deref(), out, err),
         Call::Digest(options) => digest::digest(options, out, err),
-        Call::Cells(file) => cells::list(file, out, err),
+        Call::Cells(options) => cells::list(options, out, err),
         Call::Drift(options) => pack::drift(options, out, err),
         Call::Gather(options) => cells::gather(options, out, err),
     }

@@ -17,7 +17,7 @@ pub(crate) enum Call {
     Write(WriteOptions),
     List(Option<String>),
     Digest(DigestOptions),
-    Cells(String),
+    Cells(CellsOptions),
     Gather(GatherOptions),
     Drift(DriftOptions),
     Prove(ProveOptions),
@@ -31,6 +31,26 @@ pub(crate) struct DriftOptions {
     /// A new instance; without one the pack is run again.
     pub(crate) file: Option<String>,
 }
+
+/// How `cells` is asked for.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub(crate) struct CellsOptions {
+    pub(crate) file: String,
+    /// The queue for which a script is written in place of the list.
+    pub(crate) queue: Option<Queue>,
+}
+
+/// A batch queue.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Queue {
+    /// An array job of Slurm.
+    Slurm,
+    /// GNU parallel.
+    Parallel,
+}
+
+/// The queues by name.
+const QUEUES: [(&str, Queue); 2] = [("slurm", Queue::Slurm), ("parallel", Queue::Parallel)];
 
 /// How `gather` is asked for.
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
@@ -85,6 +105,8 @@ pub(crate) struct WriteOptions {
     pub(crate) form: Form,
     /// The file that is written.
     pub(crate) out: Option<String>,
+    /// By what costs are multiplied in a scenario without names.
+    pub(crate) scale: Option<String>,
 }
 
 /// What `write` writes.
@@ -103,12 +125,18 @@ pub(crate) enum Form {
     Markdown,
     /// The results as a table.
     Csv,
+    /// The record, its results and its studies as one JSON object.
+    Json,
+    /// The drawings of the record.
+    Svg,
+    /// The scenario without names.
+    Stripped,
     /// The scenario with what its rivals gave, to be run again.
     Pack,
 }
 
 /// The forms by name.
-const FORMS: [(&str, Form); 10] = [
+const FORMS: [(&str, Form); 13] = [
     ("mps", Form::Mps),
     ("tightened", Form::Tightened),
     ("latex", Form::Latex),
@@ -118,18 +146,24 @@ const FORMS: [(&str, Form); 10] = [
     ("report", Form::Report),
     ("markdown", Form::Markdown),
     ("csv", Form::Csv),
+    ("json", Form::Json),
+    ("svg", Form::Svg),
+    ("stripped", Form::Stripped),
     ("pack", Form::Pack),
 ];
 
 impl Form {
     /// Whether it holds the whole scenario where no rival is named.
     pub(crate) fn is_whole(self) -> bool {
-        matches!(self, Self::Scenario | Self::Link) || self.is_run()
+        matches!(self, Self::Scenario | Self::Link | Self::Stripped) || self.is_run()
     }
 
     /// Whether the scenario is run for it.
     pub(crate) fn is_run(self) -> bool {
-        matches!(self, Self::Report | Self::Markdown | Self::Csv | Self::Pack)
+        matches!(
+            self,
+            Self::Report | Self::Markdown | Self::Csv | Self::Json | Self::Svg | Self::Pack
+        )
     }
 
     fn named(word: &str) -> Result<Self, String> {
@@ -163,7 +197,7 @@ pub(crate) fn parse(words: &[String]) -> Result<Call, String> {
         "write" => write(rest).map(Call::Write),
         "list" => list(rest),
         "digest" => digest(rest),
-        "cells" => one(rest, "cells").map(Call::Cells),
+        "cells" => cells(rest).map(Call::Cells),
         "gather" => gather(rest).map(Call::Gather),
         "drift" => drift(rest).map(Call::Drift),
         "prove" => prove(rest),
@@ -214,16 +248,17 @@ fn run(words: &[String]) -> Result<RunOptions, String> {
 
 fn write(words: &[String]) -> Result<WriteOptions, String> {
     let (mut files, mut form) = (Vec::new(), None);
-    let (mut rival, mut instance, mut out) = (None, None, None);
+    let (mut rival, mut instance, mut out, mut scale) = (None, None, None, None);
     let mut words = words.iter();
     while let Some(word) = words.next() {
         match word.as_str() {
             "--as" => form = Some(Form::named(value(word, words.next())?)?),
             "--rival" => rival = Some(value(word, words.next())?.to_uppercase()),
             "--instance" => instance = Some(place(value(word, words.next())?)?),
+            "--scale" => scale = Some(value(word, words.next())?.to_owned()),
             "-o" | "--out" => out = Some(value(word, words.next())?.to_owned()),
             other if is_option(other) => {
-                let known = ["--as", "--rival", "--instance", "--out"];
+                let known = ["--as", "--rival", "--instance", "--scale", "--out"];
                 return Err(unknown("option", other, &known));
             }
             file => files.push(file.to_owned()),
@@ -234,7 +269,10 @@ fn write(words: &[String]) -> Result<WriteOptions, String> {
         let known = FORMS.map(|(name, _)| name).join(", ");
         return Err(format!("write needs --as and one of {known}"));
     };
-    Ok(WriteOptions { file, rival, instance, form, out })
+    if scale.is_some() && form != Form::Stripped {
+        return Err("--scale goes with --as stripped".to_owned());
+    }
+    Ok(WriteOptions { file, rival, instance, form, out, scale })
 }
 
 fn drift(words: &[String]) -> Result<DriftOptions, String> {
@@ -259,6 +297,30 @@ fn gather(words: &[String]) -> Result<GatherOptions, String> {
         return Err("gather needs what the cells gave: hullward gather RESULT…".to_owned());
     }
     Ok(options)
+}
+
+fn cells(words: &[String]) -> Result<CellsOptions, String> {
+    let (mut files, mut queue) = (Vec::new(), None);
+    let mut words = words.iter();
+    while let Some(word) = words.next() {
+        match word.as_str() {
+            "--job" => queue = Some(named_queue(value(word, words.next())?)?),
+            other if is_option(other) => return Err(unknown("option", other, &["--job"])),
+            file => files.push(file.to_owned()),
+        }
+    }
+    let file = one(&files, "cells")?;
+    if queue.is_some() && file == "-" {
+        return Err(
+            "--job needs the name of a file: a batch job reads the scenario anew".to_owned()
+        );
+    }
+    Ok(CellsOptions { file, queue })
+}
+
+fn named_queue(word: &str) -> Result<Queue, String> {
+    let found = QUEUES.iter().find(|(name, _)| *name == word).map(|(_, queue)| *queue);
+    found.ok_or_else(|| unknown("queue", word, &QUEUES.map(|(name, _)| name)))
 }
 
 fn cell(word: &str) -> Result<u32, String> {
@@ -356,6 +418,7 @@ mod tests {
             instance: Some(2),
             form: Form::Mps,
             out: Some("b.mps".to_owned()),
+            scale: None,
         };
         let line = "write a --rival b --as mps -o b.mps --instance 2";
         assert_eq!(call(line), Ok(Call::Write(write)));
@@ -388,6 +451,7 @@ mod tests {
             "write a",
             "write --as mps",
             "write a --as mps --instance 0",
+            "write a --as mps --scale 2",
         ] {
             assert!(call(wrong).is_err(), "{wrong}");
         }

@@ -1,4 +1,4 @@
-//! `hullward write --as report, markdown or csv`: every rival and every study of a scenario is run, and what came out
+//! `hullward write --as report, markdown, json, svg or csv`: every rival and every study of a scenario is run, and what came out
 //! is put on record.
 
 use std::io::{Result, Write};
@@ -8,7 +8,7 @@ use record::link;
 use record::pack::Pack;
 use record::results::RivalResult;
 use record::scenario::{Scenario, letter};
-use record::study::Report;
+use record::study::{Line, Report};
 use report::csv::csv;
 use report::decision::{self, Evidence};
 
@@ -81,7 +81,29 @@ fn set(
         engine: engine::VERSION,
         link: &link,
     };
-    if form == Form::Markdown { decision::markdown(&evidence) } else { decision::html(&evidence) }
+    match form {
+        Form::Markdown => decision::markdown(&evidence),
+        Form::Svg => decision::svg(&evidence),
+        Form::Json => object(&evidence),
+        _ => decision::html(&evidence),
+    }
+}
+
+/// The record as one object: its pieces, and the figures that they are made of.
+fn object(evidence: &Evidence<'_>) -> String {
+    let studies: Vec<Line<'_>> =
+        evidence.studies.iter().map(|(instance, report)| report.line(instance)).collect();
+    let record: serde_json::Value =
+        serde_json::from_str(&decision::json(evidence)).unwrap_or_default();
+    let object = serde_json::json!({
+        "hullward_record": 1,
+        "engine": evidence.engine,
+        "scenario": file::print(evidence.scenario),
+        "results": evidence.results,
+        "studies": studies,
+        "record": record,
+    });
+    format!("{object:#}\n")
 }
 
 /// What is understood of the first instance.

@@ -61,6 +61,13 @@ impl Job<'_> {
                 Ok(handed) => Ok(handed),
                 Err(message) => return self.wrong(&message, err).map(Err),
             },
+            (Form::Stripped, (_, rival)) => {
+                let factor = self.options.scale.as_deref().unwrap_or("1");
+                engine::stripped(&part(self.scenario, rival), factor).map(|stripped| HandOver {
+                    notes: stripped.notes,
+                    ..scenario_of(&stripped.scenario)
+                })
+            }
             (_, (_, None)) => return self.wrong(&self.which(), err).map(Err),
             (Form::Mps, (instance, Some(rival))) => engine::mps(self.scenario, (instance, rival)),
             (Form::Tightened, (instance, Some(rival))) => {

@@ -11,6 +11,7 @@
 //! | [`prepare`] | the model of a rival, for checks |
 //! | [`describe`] | the same in sentences |
 //! | [`mps`](fn@mps), [`latex`], [`notation_text`] | a rival handed over to others |
+//! | [`stripped`](fn@stripped) | a scenario without names, to be shared |
 //!
 //! Nothing here reads a clock, and nothing runs long without [`Worker::advance`]. What comes
 //! out is the same for every slice size; replies that would only repeat how far the work is are
@@ -34,6 +35,7 @@ pub mod native;
 mod outbox;
 mod plan;
 mod readings;
+mod stripped;
 mod studies;
 mod warm;
 mod worker;
@@ -45,6 +47,7 @@ pub use handover::{HandOver, Refusal, latex, mps, notation_text, tightened};
 pub use load::{describe, prepare};
 pub use mps::{looks_like_mps, mps_report};
 pub use readings::instance_report;
+pub use stripped::{Stripped, stripped};
 pub use studies::{KINDS, StudyRun, cells, gathered, is_over_all};
 pub use worker::Worker;
 

@@ -25,6 +25,7 @@
 
 mod arcs;
 mod blocks;
+mod blocks_text;
 mod cells;
 mod complaint;
 mod extra;
@@ -49,6 +50,7 @@ mod text;
 mod triangle;
 mod tsplib;
 
+pub use blocks_text::blocks_text;
 pub use complaint::{Complaint, Severity};
 pub use instance::{Datum, Instance, Points, Reader};
 pub use layout::{Layout, has_layout, layout, layout_in_slices};

@@ -6,13 +6,15 @@ mod html;
 mod json;
 mod markdown;
 mod reopen;
+mod svg;
 
+pub(crate) use html::escaped;
 use record::results::{Proof, RivalResult, Status};
 use record::scenario::{Rival, Scenario, letter};
 use record::study::Report;
 
 use crate::number::{count, of, percent, short, ten_digits};
-use crate::study::{Section, Table, and, over_instances, overview, sections};
+use crate::study::{Figure, Section, Table, and, over_instances, overview, sections};
 
 /// Stands at the end of every record.
 const CAUTION: &str = "A plan that comes out of a model is a decision aid; driving, working-time, \
@@ -71,6 +73,29 @@ pub fn markdown(evidence: &Evidence<'_>) -> String {
 #[must_use]
 pub fn json(evidence: &Evidence<'_>) -> String {
     json::document(&blocks(evidence))
+}
+
+/// The drawings of the record as one SVG, each below its heading; where there is none it says so.
+#[must_use]
+pub fn svg(evidence: &Evidence<'_>) -> String {
+    svg::document(&drawings(evidence))
+}
+
+/// Every drawing with its heading.
+fn drawings(evidence: &Evidence<'_>) -> Vec<(String, Figure)> {
+    let mut sections: Vec<Section> = Vec::new();
+    let mut instances: Vec<&String> =
+        evidence.studies.iter().map(|(instance, _)| instance).collect();
+    instances.dedup();
+    for instance in instances {
+        let own = evidence.studies.iter().filter(|(of, _)| of == instance);
+        let own: Vec<&Report> = own.map(|(_, report)| report).collect();
+        let all =
+            overview(&own).into_iter().chain(own.into_iter().flat_map(crate::study::sections));
+        let on = if instance.is_empty() { String::new() } else { format!(" ({instance})") };
+        sections.extend(all.map(|one| Section { heading: one.heading.clone() + &on, ..one }));
+    }
+    sections.into_iter().filter_map(|one| Some((one.heading, one.figure?))).collect()
 }
 
 fn blocks(evidence: &Evidence<'_>) -> Vec<Block> {

@@ -56,7 +56,7 @@ pub async fn production(
     let (lines, remarks) = lines(&pasted.text);
     let mut out = Production {
         results: u32::try_from(lines.len()).unwrap_or(u32::MAX),
-        remarks,
+        remarks: if pasted.first { remarks } else { Vec::new() },
         ..Production::default()
     };
     if pasted.first {
@@ -151,10 +151,10 @@ fn lines(text: &str) -> (Vec<Line>, Vec<String>) {
         .iter()
         .map(|one| format!("line {}: {}. {}", one.line, one.message, one.mend))
         .collect();
-    let Some(table) = reading.instance else { return (Vec::new(), remarks) };
     let mut found: BTreeMap<Vec<String>, Line> = BTreeMap::new();
     for (column, set) in COLUMNS {
-        let Some(cells) = column_of(&table, column) else { continue };
+        let table = reading.instance.as_ref();
+        let Some(cells) = table.and_then(|table| column_of(table, column)) else { continue };
         for (key, value) in cells {
             let [instance, rival] = key.as_slice() else { continue };
             let line = found.entry(key.clone()).or_insert_with(|| Line {

@@ -9,6 +9,7 @@ use instance::{Instance, Reader, read};
 use record::study::{EquivalenceKind, EquivalenceLevel, OrderLevel, Relation};
 
 mod infeasibility;
+mod objective;
 mod rows;
 mod symmetry;
 mod variability;

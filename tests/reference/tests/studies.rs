@@ -11,8 +11,8 @@ use hullward_tests_reference::agree;
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::seeded::{extent, seeded};
 use instance::Instance;
-use model::{ColumnId, FamilyId, Model, Number, RowId, Sense, nearest_f64};
-use record::study::{FamilyTightening, OrderLevel};
+use model::{ColumnId, FamilyId, Model, Number, Row, RowId, Sense, nearest_f64};
+use record::study::{FamilyTightening, OrderLevel, RivalTightening};
 use study::{Desk, Plan, Running, Source, Subject, model_of};
 
 fn subject(letter: &str, id: &str, data: &Instance) -> Subject {
@@ -146,6 +146,106 @@ fn the_factor_that_a_switch_needs_is_that_of_highs() {
         }
     }
     assert!(compared >= 10, "{compared}");
+}
+
+/// The row of that name, and the column of the binary that switches it.
+fn placed(model: &Model, row: &str, switch: &str) -> (RowId, ColumnId) {
+    let mut rows = (0..model.row_count()).map(RowId::from_index);
+    let mut columns = (0..model.columns().len()).map(ColumnId::from_index);
+    let row = rows.find(|&id| model.row_name(id) == row).unwrap();
+    (row, columns.find(|&id| model.column_name(id) == switch).unwrap())
+}
+
+/// The model with a row that keeps its objective at an optimum, as far as a printed value goes.
+fn no_worse_than(model: &Model, optimum: f64) -> Model {
+    let cost = |place: usize| model.numbers().exact(model.columns()[place].cost).clone();
+    let entries =
+        (0..model.columns().len()).map(|place| (ColumnId::from_index(place), cost(place)));
+    let side = Number::try_from(optimum + 1e-6 * (1.0 + optimum.abs())).unwrap() - model.offset();
+    let row = Row { entries: entries.collect(), lower: None, upper: Some(side) };
+    model.with_rows("no worse", vec![row]).unwrap()
+}
+
+/// Row by row: by the relaxation, and with the optimum as a cut-off; and the row that is said to be
+/// too small to switch alone cuts off a plan, by the most that HiGHS reaches without it.
+#[test]
+fn each_switch_needs_what_highs_says_with_and_without_a_cutoff() {
+    let (mut compared, mut smaller, mut shown) = (0, 0, 0);
+    for id in ["lot/big-m", "ufl/joined"] {
+        for (name, data) in small(id) {
+            let one = subject("A", id, &data);
+            let model = Rc::clone(&one.model);
+            let found =
+                driven(|desk| study::tightening::tightening(desk, vec![one], Plan::default()));
+            let rival = &found.rivals[0];
+            let Verdict::Optimal(optimum) = highs(&model, &[], true) else { panic!("{id}") };
+            if rival.switches.is_empty() {
+                continue;
+            }
+            assert!(agree(rival.cutoff.unwrap(), optimum, 1e-6), "{id} on {name}");
+            let good = no_worse_than(&model, optimum);
+            for row in &rival.switches {
+                let at = placed(&model, &row.row, &row.switch);
+                let least = |a: f64, b: f64| if a < b { a } else { b };
+                let relaxed = least(needed(&model, at.0, at.1).unwrap(), row.by_data);
+                assert!(
+                    agree(row.by_relaxation, relaxed, 1e-6),
+                    "{id} on {name}: {row:?} {relaxed}"
+                );
+                // With no point at least as good where the switch is open nothing is claimed.
+                if let Some(need) = needed(&good, at.0, at.1) {
+                    let need = least(need, relaxed);
+                    assert!(agree(row.by_cutoff, need, 1e-4), "{id} on {name}: {row:?} {need}");
+                    smaller += usize::from(row.by_cutoff < row.by_relaxation - 1e-6);
+                }
+                compared += 1;
+            }
+            shown += usize::from(too_small(&model, rival));
+            assert!(rival.bound_by_cutoff.unwrap() <= optimum + 1e-6 * (1.0 + optimum.abs()));
+        }
+    }
+    assert!(compared >= 40 && smaller > 0, "{compared} rows, {smaller} smaller by the cut-off");
+    // The factors of both are as large as they must be.
+    assert_eq!(shown, 0);
+}
+
+/// Whether a row is said to cut off a plan; then HiGHS finds one as well.
+fn too_small(model: &Model, rival: &RivalTightening) -> bool {
+    let Some(found) = rival.too_small.first() else { return false };
+    let (row, switch) = placed(model, &found.row, &found.switch);
+    let open = Number::try_from(found.open).unwrap();
+    let none = Row { entries: Vec::new(), lower: None, upper: None };
+    let free = model.rewritten(&BTreeMap::from([(row, none)])).unwrap();
+    let rest: Vec<(ColumnId, Number)> =
+        model.row(row).entries.into_iter().filter(|(column, _)| *column != switch).collect();
+    let sense = if model.row(row).upper.is_some() { Sense::Maximise } else { Sense::Minimise };
+    let free = free.priced(sense, &rest).bounded(&[(switch, Some(open.clone()), Some(open))]);
+    let Verdict::Optimal(most) = highs(&free, &[], true) else { panic!("{found:?}") };
+    assert!(most.abs() >= found.reaches.abs() - 1e-6, "{found:?} {most}");
+    true
+}
+
+/// A factor cut by a third switches too early, which a plan proves.
+#[test]
+fn a_factor_that_is_too_small_is_shown_by_a_plan_that_highs_finds_as_well() {
+    let (name, data) = small("lot/big-m").remove(0);
+    let one = subject("A", "lot/big-m", &data);
+    let id = (0..one.model.row_count()).map(RowId::from_index).find(|&row| {
+        one.model.row_entries(row).iter().any(|(column, _)| one.model.is_binary(*column))
+    });
+    let id = id.unwrap();
+    let mut row = one.model.row(id);
+    for (column, a) in &mut row.entries {
+        if one.model.is_binary(*column) {
+            *a = &*a * Number::from(2) / Number::from(3);
+        }
+    }
+    let model = Rc::new(one.model.rewritten(&BTreeMap::from([(id, row)])).unwrap());
+    let one = Subject { model: Rc::clone(&model), source: None, entry: None, ..one };
+    let found = driven(|desk| study::tightening::tightening(desk, vec![one], Plan::default()));
+    assert!(too_small(&model, &found.rivals[0]), "{name}: {found:?}");
+    let shown = &found.rivals[0].too_small[0];
+    assert!(agree(shown.needs - shown.coefficient, shown.reaches - shown.allows, 1e-9));
 }
 
 /// The largest coefficient that the rows of a family need, by HiGHS.

@@ -112,7 +112,7 @@ fn write_table(table: &Table, out: &mut String) {
     out.push_str("</tbody>\n</table></div>\n");
 }
 
-pub(super) fn escaped(text: &str) -> String {
+pub(crate) fn escaped(text: &str) -> String {
     let mut out = String::with_capacity(text.len());
     for letter in text.chars() {
         match letter {

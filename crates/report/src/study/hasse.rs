@@ -7,6 +7,7 @@ use std::fmt::Write;
 use record::study::{Order, OrderLevel, Relation, Report};
 
 use super::{Section, and};
+use crate::decision::escaped;
 
 /// The distance of two rows, and of two places in a row, in pixels.
 const STEP: usize = 88;
@@ -198,7 +199,7 @@ impl Figure {
             "<svg role=\"img\" aria-label=\"{}\" viewBox=\"0 0 {width} {height}\" width=\"{width}\" \
              height=\"{height}\" style=\"max-width:100%;font:13px system-ui,sans-serif\" \
              fill=\"currentColor\">",
-            self.label
+            escaped(&self.label)
         );
         for ([x1, y1, x2, y2], dashes) in &self.lines {
             // Writing to a string cannot fail.
@@ -209,13 +210,18 @@ impl Figure {
             );
         }
         for (x, y, word) in &self.words {
-            let _ = write!(out, "<text x=\"{x}\" y=\"{y}\" font-style=\"italic\">{word}</text>");
+            let _ = write!(
+                out,
+                "<text x=\"{x}\" y=\"{y}\" font-style=\"italic\">{}</text>",
+                escaped(word)
+            );
         }
         for (x, y, name) in &self.names {
             let _ = write!(
                 out,
                 "<text x=\"{x}\" y=\"{y}\" font-size=\"16\" font-weight=\"600\" \
-                 text-anchor=\"middle\">{name}</text>"
+                 text-anchor=\"middle\">{}</text>",
+                escaped(name)
             );
         }
         out + "</svg>"

@@ -204,6 +204,11 @@ fn outcome(result: &RivalResult) -> Option<String> {
             let checked = if search.checked { ", every leaf checked" } else { "" };
             format!("; optimum {value} after {}{checked}", of(u64::from(search.nodes), "node"))
         }
+        (Some(search), Status::Infeasible) => {
+            let nodes = of(u64::from(search.nodes), "node");
+            let checked = if search.checked { ", every leaf checked" } else { "" };
+            format!("; no plan at all, proved by {nodes}{checked}")
+        }
         (Some(search), _) => match (search.bound, search.incumbent) {
             (Some(bound), Some(incumbent)) => format!(
                 "; stopped after {}: the best plan lies between {} and {}",

@@ -140,6 +140,47 @@ fn several_instances_are_one_study_drawn_together_by_instance() {
     std::fs::remove_dir_all(&folder).expect("it was there");
 }
 
+/// Rounds with and without the rows that forbid there and back.
+fn in_notation() -> String {
+    let text = "data\n  V  stops\n  A ⊆ V × V  drives\n  c_{i,j} ∀ (i,j) ∈ A  cost\nminimise\n  \
+         Σ_{(i,j) ∈ A} c_{i,j} x_{i,j}\nsubject to\n  \
+         Σ_{j : (i,j) ∈ A} x_{i,j} = 1  ∀ i ∈ V  (leave)\n  \
+         Σ_{i : (i,j) ∈ A} x_{i,j} = 1  ∀ j ∈ V  (enter)\n";
+    let pairs = "  x_{i,j} + x_{j,i} ≤ 1  ∀ (i,j) ∈ A  (once)\n";
+    let domain = "  x_{i,j} ∈ {0,1}  ∀ (i,j) ∈ A\n";
+    let head = SCENARIO.split("[[rival]]").next().expect("a head");
+    format!(
+        "{head}[[rival]]\ntext = '''\nPlain\n{text}{domain}'''\n[[rival]]\ntext = '''\nOnce\n{text}{pairs}{domain}'''\n\
+         [run]\nsearch = false\n[[study]]\nkind = \"order\"\n[[study]]\nkind = \"variability\"\norders = 2\n"
+    )
+}
+
+#[test]
+fn an_order_that_no_theorem_settles_is_observed_on_all_instances() {
+    let run = hullward(&["run", "--json", "-"], &in_notation());
+    assert_eq!(status(&run), 0, "{}", err(&run));
+    let lines = out(&run);
+    let objects: Vec<serde_json::Value> =
+        lines.lines().map(|line| serde_json::from_str(line).expect("JSON")).collect();
+    let orders: Vec<_> = objects.iter().filter(|object| object["study"] == "order").collect();
+    // One a day, and what they come to.
+    assert_eq!(orders.len(), 4);
+    let over = orders[3];
+    assert_eq!((&over["relation"], &over["level"]), (&"⪯".into(), &"observed".into()), "{over}");
+    assert_eq!(over["over"].as_array().map(Vec::len), Some(3));
+    assert!(over["source"].as_str().is_some_and(|said| said.ends_with("certified on 3")), "{over}");
+    let varied = objects.iter().find(|object| object["study"] == "variability").expect("one");
+    assert_eq!(
+        (&varied["instances"], varied["rivals"].as_array().map(Vec::len)),
+        (&3.into(), Some(6))
+    );
+    let pair = &varied["pairs"][0];
+    let runs: u64 = ["wins", "ties", "losses"].iter().filter_map(|of| pair[of].as_u64()).sum();
+    assert_eq!(runs, 9, "{pair}");
+    let words = out(&hullward(&["write", "--as", "markdown", "-"], &in_notation()));
+    assert!(words.contains("B is never weaker than A – observed on 3 instances"), "{words}");
+}
+
 #[test]
 fn a_script_needs_a_file_and_a_queue_that_is_known() {
     let piped = hullward(&["cells", "--job", "slurm", "-"], SCENARIO);

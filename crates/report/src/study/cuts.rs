@@ -10,7 +10,7 @@ pub(super) fn sections(advice: &CutAdvice) -> Vec<Section> {
 }
 
 fn of_rival(rival: &RivalCuts) -> Section {
-    let head = ["class", "bound", "gained", "cuts", "kept", "of the columns", "work", "rather"];
+    let head = ["class", "bound", "gained", "cuts", "kept", "density", "work", "rather"];
     let mut table = Table::new(&head, &[0, 7]);
     table.rows = rival.classes.iter().map(row).collect();
     let mut notes: Vec<String> = rival.classes.iter().filter(|one| gains(one)).map(how).collect();
@@ -57,8 +57,11 @@ fn verdict(rival: &RivalCuts) -> String {
     match rival.chosen.last() {
         None => format!("No class lifts its bound of {}.", short(bound)),
         Some((_, reached)) => format!(
-            "{} lift the bound from {} to {}; all classes together to {}.",
-            and(&names),
+            "{} the bound from {} to {}; all classes together to {}.",
+            match names.as_slice() {
+                [one] => format!("The class {one} lifts"),
+                several => format!("The classes {} lift", and(several)),
+            },
             short(bound),
             short(*reached),
             short(all)

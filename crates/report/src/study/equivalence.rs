@@ -188,16 +188,22 @@ fn plan(plan: &[SolutionEntry]) -> String {
 }
 
 fn notes(verdict: &Equivalence) -> Vec<String> {
+    let mut out = Vec::new();
+    let drawn = verdict.counterexample.as_ref().filter(|one| !one.nearest.is_empty());
+    if let Some(figure) = drawn.and_then(plans::figure) {
+        let mark = if figure.lines.is_empty() { "What has a dot" } else { "A dashed arrow" };
+        out.push(format!("{mark} is in one of the two plans alone."));
+    }
     if verdict.mutants.is_empty() {
-        return Vec::new();
+        return out;
     }
     let caught = verdict.mutants.iter().filter(|mutant| mutant.caught == Some(true)).count();
-    let mut out = vec![format!(
+    out.push(format!(
         "Control: {} of the two rivals, each with one family left out on purpose; the court \
          noticed {}.",
         of(verdict.mutants.len() as u64, "copy").replace("copys", "copies"),
         count(caught as u64),
-    )];
+    ));
     let name = |mutant: &Mutant| format!("{} without {}", mutant.rival, mutant.without);
     let same = |mutant: &&Mutant| mutant.caught == Some(false);
     let idle: Vec<String> = verdict.mutants.iter().filter(same).map(name).collect();

@@ -62,7 +62,10 @@ fn best_step(rival: &RivalLadder) -> Option<String> {
     let closes = rival.rungs.iter().any(|rung| rung.closed.is_some());
     Some(match best {
         Some((step, closed)) => {
-            format!("Short of the search, {step} closes most of its gap: {}.", percent(closed))
+            format!(
+                "Short of the search, most of its gap is closed by {step}: {}.",
+                percent(closed)
+            )
         }
         None if closes => "Nothing short of the search lifts its bound.".to_owned(),
         None => return None,

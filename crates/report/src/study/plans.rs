@@ -1,6 +1,7 @@
 //! Two plans side by side: the one on which rivals differ, and the nearest one that the other admits.
 //! Elements stand on a circle and pairs are arrows between them; a dashed arrow is in one of the plans
-//! alone. Plans that are no pairs of elements are left to words.
+//! alone. Plans that are no pairs of few elements are written value by value, with a dot before what is in
+//! one of them alone.
 
 use std::collections::BTreeSet;
 
@@ -12,8 +13,13 @@ use crate::spring::places;
 
 /// Elements at most that are drawn.
 const MOST_ELEMENTS: usize = 16;
+/// Letters of a name at most, and values of a plan that are written.
+const MOST_LETTERS: usize = 14;
+const MOST_VALUES: usize = 16;
+/// The height of a line of words.
+const LINE: usize = 20;
 /// Width and height of a plan, the radius of the circle, and room for names.
-const SIDE: f64 = 260.0;
+const SIDE: f64 = 320.0;
 const RADIUS: f64 = 84.0;
 const NAME: f64 = 22.0;
 /// Room for the line above a plan.
@@ -26,8 +32,68 @@ const ASIDE: f64 = 4.0;
 
 type Place = (f64, f64);
 
-/// The drawing of a counterexample; `None` where its plans are not pairs of few elements.
+/// The drawing of a counterexample; `None` where its plan is nothing but zeros.
 pub(super) fn figure(example: &Counterexample) -> Option<Figure> {
+    circles(example).or_else(|| listed(example))
+}
+
+/// Both plans value by value.
+fn listed(example: &Counterexample) -> Option<Figure> {
+    if example.plan.is_empty() {
+        return None;
+    }
+    let mut out = empty(example);
+    let mut rows = 0;
+    let plans = [(&example.plan, &example.nearest), (&example.nearest, &example.plan)];
+    for (side, (plan, other)) in plans.into_iter().enumerate() {
+        let alone = |entry: &SolutionEntry| !other.is_empty() && !other.contains(entry);
+        let mut lines: Vec<String> = plan
+            .iter()
+            .take(MOST_VALUES)
+            .map(|entry| format!("{} {}", if alone(entry) { "•" } else { " " }, value(entry)))
+            .collect();
+        if plan.len() > MOST_VALUES {
+            lines.push(format!("  and {} more", plan.len() - MOST_VALUES));
+        }
+        rows = rows.max(lines.len());
+        let x = side * whole(SIDE) + 12;
+        let placed = lines.into_iter().enumerate();
+        out.words.extend(placed.map(|(row, text)| (x, whole(HEAD) + LINE * (row + 1), text)));
+    }
+    out.size.1 = whole(HEAD) + LINE * (rows + 1);
+    Some(out)
+}
+
+/// `x[a, b] = 1`.
+fn value(entry: &SolutionEntry) -> String {
+    let value = crate::number::short(entry.value);
+    match entry.indices.as_slice() {
+        [] => format!("{} = {value}", entry.variable),
+        some => format!("{}[{}] = {value}", entry.variable, some.join(", ")),
+    }
+}
+
+/// The drawing with its words and no plan.
+fn empty(example: &Counterexample) -> Figure {
+    let (own, other) = (&example.admitted_by, &example.refused_by);
+    let mut out = Figure {
+        label: format!("The plan that {own} admits and {other} refuses"),
+        size: (whole(SIDE), whole(SIDE + HEAD)),
+        ..Figure::default()
+    };
+    let head = |side: f64, text: String| (whole(side * SIDE + 12.0), 18, text);
+    let refused = if example.values.is_some() { "values it otherwise" } else { "does not" };
+    out.words.push(head(0.0, format!("{own} admits it, {other} {refused}")));
+    if !example.nearest.is_empty() {
+        out.label += &format!(", and the nearest plan that {other} admits");
+        out.size.0 *= 2;
+        out.words.push(head(1.0, format!("the nearest that {other} admits")));
+    }
+    out
+}
+
+/// Both plans as arrows; `None` where they are not pairs of few elements.
+fn circles(example: &Counterexample) -> Option<Figure> {
     let (plan, nearest) = (pairs(&example.plan)?, pairs(&example.nearest)?);
     let mut elements: Vec<&str> = example.elements.iter().map(String::as_str).collect();
     for name in plan.iter().chain(&nearest).flat_map(|(from, to)| [*from, *to]) {
@@ -38,19 +104,9 @@ pub(super) fn figure(example: &Counterexample) -> Option<Figure> {
     if elements.len() > MOST_ELEMENTS || plan.is_empty() {
         return None;
     }
-    let (own, other) = (&example.admitted_by, &example.refused_by);
-    let mut out = Figure {
-        label: format!("The plan that {own} admits and {other} refuses"),
-        size: (whole(SIDE), whole(SIDE + HEAD)),
-        ..Figure::default()
-    };
-    let head = |side: f64, text: String| (whole(side * SIDE + 12.0), 18, text);
-    out.words.push(head(0.0, format!("{own} admits it, {other} does not")));
+    let mut out = empty(example);
     draw(&mut out, 0.0, &elements, (&plan, &nearest));
     if !nearest.is_empty() {
-        out.label += &format!(", and the nearest plan that {other} admits");
-        out.size.0 *= 2;
-        out.words.push(head(1.0, format!("the nearest that {other} admits")));
         draw(&mut out, 1.0, &elements, (&nearest, &plan));
     }
     Some(out)
@@ -76,14 +132,22 @@ fn draw(out: &mut Figure, side: f64, elements: &[&str], (plan, other): (&Pairs, 
     };
     for (place, name) in elements.iter().enumerate() {
         let (x, y) = at(RADIUS + NAME, place);
-        out.names.push((whole(x), whole(y + 4.0), (*name).to_owned()));
+        out.names.push((whole(x), whole(y + 4.0), shortened(name)));
     }
     let place = |name: &str| elements.iter().position(|known| *known == name);
     for pair in plan {
         let (Some(from), Some(to)) = (place(pair.0), place(pair.1)) else { continue };
-        let dashes = if other.contains(pair) { "none" } else { "5 4" };
+        let both = other.is_empty() || other.contains(pair);
+        let dashes = if both { "none" } else { "5 4" };
         arrow(out, (at(RADIUS, from), at(RADIUS, to)), dashes);
     }
+}
+
+fn shortened(name: &str) -> String {
+    if name.chars().count() <= MOST_LETTERS {
+        return name.to_owned();
+    }
+    name.chars().take(MOST_LETTERS - 1).chain(['…']).collect()
 }
 
 fn arrow(out: &mut Figure, ((x1, y1), (x2, y2)): (Place, Place), dashes: &'static str) {
@@ -136,8 +200,12 @@ mod tests {
         let dashed = drawn.lines.iter().filter(|(_, dashes)| *dashes == "5 4").count();
         assert_eq!((drawn.lines.len(), dashed, drawn.names.len()), (24, 4, 8), "{drawn:?}");
         assert!(drawn.svg().contains(">the nearest that B admits<"));
+        // One index is no pair: value by value, and what is in one plan alone has a dot.
         let mut other = example;
         other.plan[0].indices.pop();
-        assert!(figure(&other).is_none());
+        let drawn = figure(&other).unwrap_or_default();
+        assert!(drawn.lines.is_empty(), "{drawn:?}");
+        let dotted = drawn.words.iter().filter(|(_, _, word)| word.starts_with('•')).count();
+        assert_eq!(dotted, 6, "{drawn:?}");
     }
 }

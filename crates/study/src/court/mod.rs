@@ -3,7 +3,8 @@
 //! Nothing but a proof settles it, so everything is tried that can tell them apart: the optimum, the best plan of
 //! each in the other, duels on random objectives of either sign, on sub-instances every plan, and each row of one over
 //! every plan of the other.
-//! Last, each rival is broken on purpose to see that the court would notice. The verdict names
+//! Last, where nothing tells them apart, each rival is broken on purpose to see that the court would
+//! notice. The verdict names
 //! which equivalence holds and how far it was tried.
 
 mod duel;
@@ -110,11 +111,10 @@ impl<'s> Case<'s> {
             }
         }
         self.told(&mut findings).await;
-        let (mutants, mutants_untried) = if self.plan.mutants && !self.shared.pairs.is_empty() {
-            self.mutants(&findings).await
-        } else {
-            (Vec::new(), 0)
-        };
+        // Of rivals that differ nothing is shown by a copy that differs as well.
+        let control = self.plan.mutants && !self.shared.pairs.is_empty() && !findings.plans_differ;
+        let (mutants, mutants_untried) =
+            if control { self.mutants(&findings).await } else { (Vec::new(), 0) };
         let (equivalent, level, kind) = verdict::verdict(&findings);
         let [a, b] = self.rivals;
         Equivalence {

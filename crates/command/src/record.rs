@@ -9,6 +9,7 @@ use record::pack::Pack;
 use record::results::RivalResult;
 use record::scenario::{Scenario, letter};
 use record::study::{Line, Report};
+use record::typeset::Typeset;
 use report::csv::csv;
 use report::decision::{self, Evidence};
 
@@ -70,6 +71,8 @@ fn set(
             engine::notation_text(scenario, rival).map_or_else(|_| String::new(), |it| it.text)
         })
         .collect();
+    let typeset: Vec<Typeset> = statements.iter().map(|text| engine::typeset(text)).collect();
+    let unit = scenario.instance.as_ref().map(|text| engine::instance_report(text).unit);
     let link = link::pack(&file::print(scenario)).unwrap_or_default();
     let link = if link.len() > link::OFTEN_CUT { String::new() } else { link };
     let evidence = Evidence {
@@ -78,6 +81,8 @@ fn set(
         studies,
         facts: &facts,
         statements: &statements,
+        typeset: &typeset,
+        unit: &unit.unwrap_or_default(),
         engine: engine::VERSION,
         link: &link,
     };

@@ -8,6 +8,7 @@ use model::Model;
 use notation::syntax::Formulation;
 use notation::{Binding, Bound, Checked, Diagnostic, Expansion, Limits, Progress, utf16_range};
 use record::message::{CheckJob, CheckReport, CheckedSize, Complaint, Remark, TextEdit};
+use record::typeset::Typeset;
 
 use crate::map::{of_diagnostic, of_typeset};
 use crate::readings::Readings;
@@ -99,6 +100,14 @@ fn remark(text: &str, found: &Diagnostic) -> Remark {
 
 fn names(names: &[&str]) -> Vec<String> {
     names.iter().map(|&name| name.to_owned()).collect()
+}
+
+/// Journal notation set as mathematics; without rows where there is none.
+#[must_use]
+pub fn typeset(text: &str) -> Typeset {
+    let parse = notation::parse(text);
+    let (checked, _) = notation::check(&parse.tree);
+    of_typeset(text, &notation::typeset(&parse.tree, text), &checked)
 }
 
 #[cfg(test)]

@@ -8,6 +8,7 @@
 //! | [`log_digest`] | one line that two machines can compare |
 //! | [`LogAudit`] | a saved log proved again |
 //! | [`explanation`], [`explained`] | what the code of a complaint means, and the codes there are |
+//! | [`typeset`](fn@typeset) | journal notation set as mathematics |
 //! | [`prepare`] | the model of a rival, for checks |
 //! | [`describe`] | the same in sentences |
 //! | [`mps`](fn@mps), [`latex`], [`notation_text`] | a rival handed over to others |
@@ -41,6 +42,7 @@ mod warm;
 mod worker;
 
 pub use audit::LogAudit;
+pub use check::typeset;
 pub use digest::log_digest;
 pub use explain::{explained, explanation};
 pub use handover::{HandOver, Refusal, latex, mps, notation_text, tightened};

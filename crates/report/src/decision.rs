@@ -2,9 +2,11 @@
 //! put together once as blocks and set as HTML or Markdown; every sentence comes from figures that
 //! stand beside it.
 
+mod choice;
 mod html;
 mod json;
 mod markdown;
+mod mathml;
 mod reopen;
 mod svg;
 
@@ -12,6 +14,7 @@ pub(crate) use html::escaped;
 use record::results::{Proof, RivalResult, Status};
 use record::scenario::{Rival, Scenario, letter};
 use record::study::Report;
+use record::typeset::Typeset;
 
 use crate::number::{count, of, percent, short, ten_digits};
 use crate::study::{Figure, Section, Table, and, over_instances, overview, sections};
@@ -33,6 +36,10 @@ pub struct Evidence<'e> {
     pub facts: &'e [String],
     /// The notation of each rival; empty for a model in MPS.
     pub statements: &'e [String],
+    /// The same set as mathematics; none, or empty, where it is not set.
+    pub typeset: &'e [Typeset],
+    /// The unit of the objective ("minutes"); empty where the data name none.
+    pub unit: &'e str,
     /// The engine's version.
     pub engine: &'e str,
     /// The link's part behind the page's address; empty where it is too long.
@@ -53,6 +60,8 @@ enum Block {
     /// A drawing, as SVG of our own.
     Figure(String),
     Code(String),
+    /// A formulation set as mathematics, and its notation.
+    Formulation(Typeset, String),
 }
 
 /// The record as one HTML file that needs nothing else and prints on A4 and Letter.
@@ -119,6 +128,11 @@ fn blocks(evidence: &Evidence<'_>) -> Vec<Block> {
             out.extend(sections(report).into_iter().flat_map(|found| section(instance, found)));
         }
     }
+    let choice = choice::choice(evidence);
+    if !choice.is_empty() {
+        out.push(Block::Heading("The choice".to_owned()));
+        out.push(Block::List(choice));
+    }
     out.push(Block::Heading("What reopens this decision".to_owned()));
     out.push(Block::List(reopen::conditions(evidence)));
     out.extend(statements(evidence));
@@ -164,6 +178,7 @@ fn named(evidence: &Evidence<'_>, place: usize, rival: &Rival) -> String {
 /// The sentences of the studies, and for each rival what its search came to.
 fn findings(evidence: &Evidence<'_>) -> Vec<String> {
     let mut out: Vec<String> = evidence.results.iter().filter_map(outcome).collect();
+    out.extend(instances(evidence).iter().filter_map(|one| choice::interval(evidence, one)));
     out.extend(best_known(evidence));
     for (_, report) in evidence.studies {
         let verdicts =
@@ -295,7 +310,13 @@ fn statements(evidence: &Evidence<'_>) -> Vec<Block> {
     let texts = evidence.statements.iter().enumerate().filter(|(_, text)| !text.is_empty());
     let mut out: Vec<Block> = texts
         .flat_map(|(place, text)| {
-            [Block::Minor(format!("Rival {}", letter(place))), Block::Code(text.clone())]
+            let set = evidence.typeset.get(place).filter(|set| !set.rows.is_empty());
+            let text = text.clone();
+            let body = match set {
+                Some(set) => Block::Formulation(set.clone(), text),
+                None => Block::Code(text),
+            };
+            [Block::Minor(format!("Rival {}", letter(place))), body]
         })
         .collect();
     if !out.is_empty() {

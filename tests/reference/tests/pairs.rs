@@ -89,6 +89,8 @@ fn found(pair: &Pair) -> Option<Found> {
         studies: &studies,
         facts: &[],
         statements: &[],
+        typeset: &[],
+        unit: "",
         engine: engine::VERSION,
         link: "",
     };

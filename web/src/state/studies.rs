@@ -175,12 +175,15 @@ pub(crate) fn on_record(
     let statements: Vec<String> = texts.collect();
     let link = record::link::pack(&document.file()).unwrap_or_default();
     let facts = document.accepted.as_ref().map(|accepted| accepted.report.facts.clone());
+    let unit = document.accepted.as_ref().map(|accepted| accepted.report.unit.clone());
     let evidence = Evidence {
         scenario: &scenario,
         results,
         studies: &studies,
         facts: &facts.unwrap_or_default(),
         statements: &statements,
+        typeset: &[],
+        unit: &unit.unwrap_or_default(),
         engine: env!("CARGO_PKG_VERSION"),
         link: if link.len() > record::link::OFTEN_CUT { "" } else { &link },
     };

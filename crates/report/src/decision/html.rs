@@ -2,7 +2,7 @@
 
 use std::fmt::Write;
 
-use super::Block;
+use super::{Block, mathml};
 use crate::notes::{Hand, Piece, Run, pieces};
 use crate::study::Table;
 
@@ -18,6 +18,7 @@ p,ul,ol{margin:4px 0 8px}ul,ol{padding-left:20px}p{white-space:pre-line}\
 table{border-collapse:collapse;margin:8px 0;font:13px/20px system-ui,sans-serif;font-variant-numeric:tabular-nums}\
 th,td{padding:3px 10px 3px 0;border-bottom:1px solid #8884;text-align:right;font-weight:400;vertical-align:top}\
 th.w,td.w{text-align:left}thead th{opacity:.7}\
+.set td{text-align:left;padding:2px 8px 2px 0;border:0;font-size:14px}.set td.l{text-align:right;padding-right:3px}\
 pre{overflow-x:auto;margin:8px 0;padding:8px;border:1px solid #8884;font:13px/18px ui-monospace,monospace;white-space:pre-wrap;overflow-wrap:anywhere}\
 @media print{body{max-width:none;margin:0;font-size:10.5pt;line-height:15pt}h2,h3{break-after:avoid}table,pre,li{break-inside:avoid}a{color:inherit}}\
 @page{margin:20mm}";
@@ -50,6 +51,10 @@ fn write_block(block: &Block, out: &mut String) {
         Block::Text(text) => out.push_str(&tag("p", text)),
         Block::Notes(text) => pieces(text).iter().for_each(|piece| write_piece(piece, out)),
         Block::Code(text) => out.push_str(&tag("pre", text)),
+        Block::Formulation(set, text) => {
+            out.push_str(&mathml::set(set));
+            out.push_str(&tag("pre", text));
+        }
         Block::List(items) => {
             let items: String = items.iter().map(|item| tag("li", item)).collect();
             // Writing to a string cannot fail.

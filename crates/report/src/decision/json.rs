@@ -18,7 +18,7 @@ fn of_block(block: &Block) -> String {
         Block::List(items) => ("list", words(items)),
         Block::Table(table) => ("table", of_table(table)),
         Block::Figure(svg) => ("figure", text(svg)),
-        Block::Code(words) => ("code", text(words)),
+        Block::Code(words) | Block::Formulation(_, words) => ("code", text(words)),
     };
     format!("{{\"{kind}\": {value}}}")
 }

@@ -19,7 +19,7 @@ pub(super) fn document(blocks: &[Block]) -> String {
                     items.iter().map(|item| format!("- {}", line(item))).collect();
                 writeln!(out, "{}\n", items.join("\n"))
             }
-            Block::Code(text) => {
+            Block::Code(text) | Block::Formulation(_, text) => {
                 let fence = fence(text);
                 writeln!(out, "{fence}\n{}\n{fence}\n", text.trim_end())
             }

@@ -1,0 +1,201 @@
+//! What the figures say of the choice: which rival is ahead and by what, and of each other one why it is
+//! not. Every sentence is made of figures that stand in the record; the choice itself is for people.
+
+use record::results::{Proof, RivalResult, Status};
+use record::study::{GrowthPair, Order, OrderLevel, Relation, Report};
+
+use super::Evidence;
+use crate::number::{count, of, short, ten_digits};
+use crate::study::and;
+
+/// Notes that record a choice hold this word.
+const DECIDED: &str = "Decided: ";
+
+/// What a rival came to over all instances.
+struct Standing<'r> {
+    letter: &'r str,
+    instances: u32,
+    solved: u32,
+    work: f64,
+}
+
+/// The sentences; none where fewer than two rivals were searched.
+pub(super) fn choice(evidence: &Evidence<'_>) -> Vec<String> {
+    let mut standings = standings(evidence.results);
+    if standings.len() < 2 {
+        return Vec::new();
+    }
+    standings.sort_by(|a, b| b.solved.cmp(&a.solved).then(a.work.total_cmp(&b.work)));
+    let ahead = &standings[0];
+    let mut out = vec![decided(evidence)];
+    if let Some(pair) = apart(evidence.studies) {
+        out.push(format!(
+            "{pair} are not the same problem: what one gains over the other says nothing."
+        ));
+        return out;
+    }
+    if ahead.solved == 0 {
+        out.push("No rival was solved within the limits: which is ahead is not known.".to_owned());
+        return out;
+    }
+    let solved = match (ahead.solved, ahead.instances) {
+        (1, 1) => "it was solved".to_owned(),
+        (solved, all) => {
+            let all = of(u64::from(all), "instance");
+            format!("{} of {all} were solved", count(u64::from(solved)))
+        }
+    };
+    out.push(format!(
+        "On these figures {} is ahead: {solved} with {} non-zeros touched.",
+        ahead.letter,
+        short(ahead.work)
+    ));
+    out.extend(standings[1..].iter().map(|other| why_not(evidence, ahead, other)));
+    out
+}
+
+fn decided(evidence: &Evidence<'_>) -> String {
+    // Up to the end of its paragraph.
+    let paragraphs = evidence.scenario.notes.split("\n\n");
+    let found = paragraphs.filter_map(|one| one.split_once(DECIDED)).next();
+    match found {
+        Some((_, choice)) => {
+            let choice: Vec<&str> = choice.split_whitespace().collect();
+            format!("Decided, as the notes say: {}", choice.join(" "))
+        }
+        None => "No choice is recorded: a line “Decided: …” in the notes is one.".to_owned(),
+    }
+}
+
+/// The rivals that were searched, in order.
+fn standings(results: &[RivalResult]) -> Vec<Standing<'_>> {
+    let mut out: Vec<Standing<'_>> = Vec::new();
+    for result in results.iter().filter(|result| !result.relaxation) {
+        let Some(search) = &result.search else { continue };
+        let place = out.iter().position(|one| one.letter == result.rival);
+        let place = place.unwrap_or_else(|| {
+            let letter = result.rival.as_str();
+            out.push(Standing { letter, instances: 0, solved: 0, work: 0.0 });
+            out.len() - 1
+        });
+        // Exact up to 2⁵³; more is not reached within the limits.
+        #[allow(clippy::cast_precision_loss, reason = "counts of work are far below 2^53")]
+        let work = search.work as f64;
+        out[place].instances += 1;
+        out[place].solved += u32::from(result.status == Status::Optimal);
+        out[place].work += work;
+    }
+    out
+}
+
+/// A pair that the court tells apart.
+fn apart(studies: &[(String, Report)]) -> Option<String> {
+    studies.iter().find_map(|(_, report)| match report {
+        Report::Equivalence(verdict) if verdict.equivalent == Some(false) => {
+            Some(verdict.rivals.join(" and "))
+        }
+        _ => None,
+    })
+}
+
+/// Why a rival is not the one that is ahead.
+fn why_not(evidence: &Evidence<'_>, ahead: &Standing<'_>, other: &Standing<'_>) -> String {
+    let mut why = Vec::new();
+    if other.solved < ahead.solved {
+        let instances = of(u64::from(other.instances), "instance");
+        why.push(format!("{} of {instances} solved", count(u64::from(other.solved))));
+    }
+    if ahead.work > 0.0 {
+        let least = if other.solved < ahead.solved { "at least " } else { "" };
+        why.push(format!("{least}{} times the work", short(other.work / ahead.work)));
+    }
+    let pair = [ahead.letter, other.letter];
+    for (_, report) in evidence.studies {
+        match report {
+            Report::Order(order) => why.extend(weaker(order, pair)),
+            Report::Growth(growth) => {
+                why.extend(growth.pairs.iter().filter_map(|one| grown(one, pair)));
+            }
+            _ => {}
+        }
+    }
+    why.dedup();
+    format!("{} is behind it: {}.", other.letter, and(&why))
+}
+
+/// How the relaxation of the other stands to that of the one ahead.
+fn weaker(order: &Order, [ahead, other]: [&str; 2]) -> Option<String> {
+    let turned = order.rivals[0] == other && order.rivals[1] == ahead;
+    if !turned && (order.rivals[0] != ahead || order.rivals[1] != other) {
+        return None;
+    }
+    let level = match order.level {
+        OrderLevel::Theorem => "theorem",
+        OrderLevel::Certified => "certified",
+        OrderLevel::Observed => "observed",
+        OrderLevel::Undecided => return None,
+    };
+    let relation = match (order.relation, turned) {
+        (Relation::NeverWeaker, false) | (Relation::NeverStronger, true) => "no stronger than that",
+        (Relation::NeverWeaker, true) | (Relation::NeverStronger, false) => {
+            "though no weaker than that"
+        }
+        (Relation::Equal, _) => "as strong as that",
+        (Relation::Incomparable | Relation::Undecided, _) => return None,
+    };
+    Some(format!("a relaxation {relation} of {ahead} ({level})"))
+}
+
+/// What the growth study says of the pair.
+fn grown(pair: &GrowthPair, [ahead, other]: [&str; 2]) -> Option<String> {
+    let same = pair.rivals.iter().all(|rival| rival == ahead || rival == other);
+    let instances = of(u64::from(pair.instances), "instance");
+    (same && !pair.distinguishable)
+        .then(|| format!("though not to be told from it over {instances} of the growth study"))
+}
+
+/// Between which values the best possible plan of an instance lies, as far as exact arithmetic proves it,
+/// in the unit of the data; `None` where nothing is proved or rivals are not the same problem.
+pub(super) fn interval(evidence: &Evidence<'_>, instance: &str) -> Option<String> {
+    if apart(evidence.studies).is_some() {
+        return None;
+    }
+    let own = || evidence.results.iter().filter(|one| one.instance == instance);
+    let maximise = own().next()?.maximise;
+    let sign = if maximise { -1.0 } else { 1.0 };
+    let best = |values: &mut dyn Iterator<Item = f64>, most: bool| {
+        values.reduce(|best, value| {
+            let better = if most { sign * value > sign * best } else { sign * value < sign * best };
+            if better { value } else { best }
+        })
+    };
+    let bound = best(&mut own().filter_map(proved), true)?;
+    let plans =
+        own().filter(|one| !one.relaxation).filter_map(|one| one.search.as_ref()?.incumbent);
+    let unit = if evidence.unit.is_empty() { String::new() } else { format!(" {}", evidence.unit) };
+    let on = if instance.is_empty() { String::new() } else { format!(" on {instance}") };
+    let (verb, side) = if maximise { ("brings", "at most") } else { ("costs", "at least") };
+    let Some(plan) = best(&mut plans.into_iter(), false) else {
+        let bound = ten_digits(bound);
+        return Some(format!("The best possible plan{on} {verb} {side} {bound}{unit}: proved."));
+    };
+    let close = (plan - bound).abs() <= 1e-9 * (1.0 + plan.abs());
+    let (low, high) = if bound < plan { (bound, plan) } else { (plan, bound) };
+    Some(if close {
+        format!("The best possible plan{on} {verb} {}{unit}: proved.", ten_digits(plan))
+    } else {
+        format!(
+            "The best possible plan{on} {verb} between {} and {}{unit}; the best one found {verb} {}{unit}.",
+            ten_digits(low),
+            ten_digits(high),
+            ten_digits(plan)
+        )
+    })
+}
+
+/// The bound of a rival that exact arithmetic proved: of its tree, else of its relaxation.
+fn proved(result: &RivalResult) -> Option<f64> {
+    let tree = result.search.as_ref().filter(|search| search.checked && !result.relaxation);
+    let root = result.root.as_ref().filter(|root| root.proof != Proof::None);
+    tree.and_then(|search| search.bound).or(root.and_then(|root| root.bound))
+}

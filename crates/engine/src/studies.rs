@@ -261,6 +261,7 @@ fn plan(scenario: &Scenario, study: &Study) -> Result<Plan, String> {
     for (name, field) in &study.fields {
         match name.as_str() {
             "nodes" => plan.nodes = whole(name, field)?,
+            "work" => plan.work = Some(u64::from(whole(name, field)?)),
             "seed" => plan.seed = u64::from(whole(name, field)?),
             "duels" => plan.duels = whole(name, field)?,
             "plans" => plan.plans = whole(name, field)?,
@@ -277,7 +278,7 @@ fn plan(scenario: &Scenario, study: &Study) -> Result<Plan, String> {
             "mutants" => plan.mutants = flag(name, field)?,
             "table" => drop(text(name, field)?),
             _ => {
-                let known = "nodes, seed, duels, plans, rows, orders, sizes, seeds, classes, \
+                let known = "nodes, work, seed, duels, plans, rows, orders, sizes, seeds, classes, \
                              production, shared, mutants, table";
                 return Err(format!("the study has no \"{name}\"; there are {known}"));
             }

@@ -94,9 +94,15 @@ impl Desk {
 
     /// Solves a model: its relaxation, and its search where the settings ask for it.
     pub async fn solve(&self, model: &Rc<Model>, settings: Settings) -> Solved {
+        self.solve_within(model, settings, u64::MAX).await
+    }
+
+    /// The same with so many non-zeros touched at most: then it is stopped at the next step, which is
+    /// the same one for every slice size.
+    pub async fn solve_within(&self, model: &Rc<Model>, settings: Settings, most: u64) -> Solved {
         let searched = settings.search;
         let mut search = Search::new(Rc::clone(model), settings);
-        poll_fn(|_| self.go_on(&mut search, searched)).await;
+        poll_fn(|_| self.go_on(&mut search, (searched, most))).await;
         self.count();
         solved(&search, searched)
     }
@@ -110,7 +116,7 @@ impl Desk {
     pub async fn conditioned(&self, model: &Rc<Model>) -> (Solved, Option<f64>) {
         let settings = Settings { search: false, ..Settings::default() };
         let mut search = Search::new(Rc::clone(model), settings);
-        poll_fn(|_| self.go_on(&mut search, false)).await;
+        poll_fn(|_| self.go_on(&mut search, (false, u64::MAX))).await;
         self.count();
         let condition = search.condition_estimate();
         self.spend(model.row_count() as u64).await;
@@ -125,7 +131,7 @@ impl Desk {
     ) -> (Solved, Vec<model::Row>) {
         let searched = settings.search;
         let mut search = Search::new(Rc::clone(model), settings);
-        poll_fn(|_| self.go_on(&mut search, searched)).await;
+        poll_fn(|_| self.go_on(&mut search, (searched, u64::MAX))).await;
         self.count();
         (solved(&search, searched), search.cut_rows())
     }
@@ -134,7 +140,7 @@ impl Desk {
     pub(crate) async fn members(&self, model: &Rc<Model>) -> Vec<(String, model::Row)> {
         let settings = Settings { search: false, ..Settings::default() };
         let mut search = Search::new(Rc::clone(model), settings);
-        poll_fn(|_| self.go_on(&mut search, false)).await;
+        poll_fn(|_| self.go_on(&mut search, (false, u64::MAX))).await;
         self.count();
         search.members()
     }
@@ -158,14 +164,17 @@ impl Desk {
         .await;
     }
 
-    fn go_on(&self, search: &mut Search, searched: bool) -> Poll<()> {
+    fn go_on(&self, search: &mut Search, (searched, most): (bool, u64)) -> Poll<()> {
         loop {
             let left = self.left.get();
             if left == 0 {
                 return Poll::Pending;
             }
             let before = search.work().ticks;
-            let progress = search.advance(left);
+            if before >= most {
+                return Poll::Ready(());
+            }
+            let progress = search.advance(left.min(most - before));
             self.take((search.work().ticks - before).max(1));
             match progress {
                 Progress::Working => {}

@@ -94,6 +94,7 @@ fn blank(grounds: &[Ground], plan: &Plan, family: Option<&str>) -> Growth {
             None => "parts of the instance".to_owned(),
         },
         nodes: plan.nodes,
+        most_work: plan.work,
         production: plan.growth.production.unwrap_or(extent.max(largest)),
         seed: plan.seed,
         of: cells(grounds, plan),
@@ -163,7 +164,8 @@ async fn run(
     let count = |length: usize| u32::try_from(length).unwrap_or(u32::MAX);
     let cell =
         Cell { rows: count(model.row_count()), columns: count(model.columns().len()), ..cell };
-    let solved = desk.solve(&model, plan.search()).await;
+    let most = plan.work.unwrap_or(u64::MAX);
+    let solved = desk.solve_within(&model, plan.search(), most).await;
     Cell {
         bound: solved.bound,
         incumbent: solved.incumbent,

@@ -8,6 +8,8 @@ use tree::Settings;
 pub struct Plan {
     /// Nodes at most for each search.
     pub nodes: u32,
+    /// Non-zeros touched at most for each run of a growth study or of variability; `None` is no limit.
+    pub work: Option<u64>,
     /// Every random choice derives from it.
     pub seed: u64,
     /// Random objectives of each sign that rivals are compared on.
@@ -58,6 +60,7 @@ impl Default for Plan {
     fn default() -> Self {
         Self {
             nodes: 5_000,
+            work: None,
             seed: 0,
             duels: 12,
             plans: 200,

@@ -156,6 +156,31 @@ fn what_comes_out_is_the_same_for_every_slice() {
     }
 }
 
+/// A run that is stopped for its work stops at the same step for every slice, is no solved one, and has
+/// done about that much.
+#[test]
+fn a_run_is_stopped_for_its_work_where_it_is_for_every_slice() {
+    let study = |ticks, work| {
+        let subjects = vec![shipped("A", "atsp/labels", &stops(9))];
+        let grounds = vec![crate::Ground { title: String::new(), subjects }];
+        let growth = crate::GrowthPlan { sizes: vec![9], seeds: vec![1], ..Default::default() };
+        let plan = Plan { work, growth, ..Plan::default() };
+        driven(ticks, |desk| crate::growth::growth(desk, grounds, plan, None)).cells.remove(0)
+    };
+    let whole = study(u64::MAX, None);
+    let half = study(u64::MAX, Some(whole.work / 2));
+    assert!(whole.solved && !half.solved, "{whole:?} {half:?}");
+    assert!(
+        half.work >= whole.work / 2 && half.work < whole.work,
+        "{} of {}",
+        half.work,
+        whole.work
+    );
+    for ticks in [1, 999, 70_000] {
+        assert_eq!(study(ticks, Some(whole.work / 2)), half);
+    }
+}
+
 #[test]
 fn leaving_a_family_out_is_the_bound_of_the_text_without_it() {
     let data = stops(8);

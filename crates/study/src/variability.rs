@@ -59,12 +59,14 @@ async fn of_rival(desk: &Desk, subject: &Subject, plan: &Plan) -> RivalVariabili
         ..RivalVariability::default()
     };
     desk.say(format!("{}: as it is written", rival.rival));
-    rival.written = run(&desk.solve(&subject.model, plan.search()).await);
+    let most = plan.work.unwrap_or(u64::MAX);
+    rival.written = run(&desk.solve_within(&subject.model, plan.search(), most).await);
     for order in 1..=plan.orders {
         desk.say(format!("{}: order {order} of {}", rival.rival, plan.orders));
         let seed = plan.seed.wrapping_mul(1_000_003).wrapping_add(u64::from(order));
         let (model, _) = subject.model.reordered(|name| key(seed, name));
-        rival.runs.push(run(&desk.solve(&Rc::new(model), plan.search()).await));
+        let solved = desk.solve_within(&Rc::new(model), plan.search(), most).await;
+        rival.runs.push(run(&solved));
     }
     rival.work = spread(&rival);
     rival

@@ -10,6 +10,9 @@ pub struct Growth {
     pub data: String,
     /// Nodes at most for each run; a run that needs more counts as stopped there.
     pub nodes: u32,
+    /// Non-zeros touched at most for each run, where that is limited too.
+    #[serde(default)]
+    pub most_work: Option<u64>,
     /// The size that the fit is drawn out to.
     pub production: u32,
     /// The seed of the resampling.

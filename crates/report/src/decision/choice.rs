@@ -6,7 +6,6 @@ use record::study::{GrowthPair, Order, OrderLevel, Relation, Report};
 
 use super::Evidence;
 use crate::number::{count, of, short, ten_digits};
-use crate::study::and;
 
 /// Notes that record a choice hold this word.
 const DECIDED: &str = "Decided: ";
@@ -120,7 +119,7 @@ fn why_not(evidence: &Evidence<'_>, ahead: &Standing<'_>, other: &Standing<'_>) 
         }
     }
     why.dedup();
-    format!("{} is behind it: {}.", other.letter, and(&why))
+    format!("{} is behind it: {}.", other.letter, why.join("; "))
 }
 
 /// How the relaxation of the other stands to that of the one ahead.
@@ -136,14 +135,16 @@ fn weaker(order: &Order, [ahead, other]: [&str; 2]) -> Option<String> {
         OrderLevel::Undecided => return None,
     };
     let relation = match (order.relation, turned) {
-        (Relation::NeverWeaker, false) | (Relation::NeverStronger, true) => "no stronger than that",
-        (Relation::NeverWeaker, true) | (Relation::NeverStronger, false) => {
-            "though no weaker than that"
+        (Relation::NeverWeaker, false) | (Relation::NeverStronger, true) => {
+            "its relaxation is no stronger than that"
         }
-        (Relation::Equal, _) => "as strong as that",
+        (Relation::NeverWeaker, true) | (Relation::NeverStronger, false) => {
+            "though its relaxation is no weaker than that"
+        }
+        (Relation::Equal, _) => "its relaxation is as strong as that",
         (Relation::Incomparable | Relation::Undecided, _) => return None,
     };
-    Some(format!("a relaxation {relation} of {ahead} ({level})"))
+    Some(format!("{relation} of {ahead} ({level})"))
 }
 
 /// What the growth study says of the pair.

@@ -84,8 +84,8 @@ fn every_figure_of_the_findings_stands_in_the_record() {
         "- The best possible plan costs 214 minutes: proved.",
         "- No choice is recorded",
         "- On these figures B is ahead: it was solved with 900 non-zeros touched.",
-        "- A is behind it: 47.89 times the work, a relaxation no stronger than that of B (theorem) and \
-         though not to be told from it over 6 instances of the growth study.",
+        "- A is behind it: 47.89 times the work; its relaxation is no stronger than that of B \
+         (theorem); though not to be told from it over 6 instances of the growth study.",
         "come first.",
     ] {
         assert!(text.contains(sentence), "{sentence}\n{text}");

@@ -45,9 +45,12 @@ fn sizes(growth: &Growth) -> Section {
     Section {
         figure: None,
         heading: format!(
-            "Growth ({}; at most {} a run)",
+            "Growth ({}; at most {}{} a run)",
             growth.data,
-            of(u64::from(growth.nodes), "node")
+            of(u64::from(growth.nodes), "node"),
+            growth
+                .most_work
+                .map_or_else(String::new, |most| format!(" and {} non-zeros touched", count(most)))
         ),
         verdict: growth.pairs.iter().map(|pair| verdict(pair, "work")).collect(),
         table: Some(table),

@@ -11,9 +11,8 @@ use record::scenario::{InstanceText, Rival, Scenario};
 fn papers() -> Vec<(String, String, String, BTreeMap<String, String>)> {
     let folder = concat!(env!("CARGO_MANIFEST_DIR"), "/../notation/tests/models");
     let mut paths = Vec::new();
-    for folder in
-        ["", "/unseen", "/printed", "/journals", "/further"].map(|part| format!("{folder}{part}"))
-    {
+    let parts = ["", "/unseen", "/printed", "/journals", "/further", "/habits", "/manuscripts"];
+    for folder in parts.map(|part| format!("{folder}{part}")) {
         let entries = std::fs::read_dir(folder).into_iter().flatten().flatten();
         paths.extend(entries.map(|entry| entry.path()).filter(|p| p.is_file()));
     }

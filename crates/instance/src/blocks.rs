@@ -7,13 +7,14 @@
 //!
 //! A bare name heads a list of labels, or of integers when every cell is a whole number. After
 //! `by`, rows with as many cells as indices make a set of tuples, rows with one more cell
-//! numbers over them. `name = value` is a number or an element and needs no blank line.
+//! numbers over them, or labels, which are kept as tuples that end with them (`o by k`: the
+//! origin of each k). `name = value` is a number or an element and needs no blank line.
 
 use std::collections::BTreeMap;
 use std::ops::Range;
 
 use crate::MAX_STOPS;
-use crate::cells::{Separator, number, split, style};
+use crate::cells::{Cell, Separator, is_word, number, split, style};
 use crate::complaint::{Complaints, excerpt, grouped, plural};
 use crate::facts;
 use crate::instance::{Datum, Instance, Reader};
@@ -199,6 +200,11 @@ async fn by(
     let narrow = rows.iter().filter(|row| row.len() == arity).count();
     let numbers = wide > narrow;
     let width = arity + usize::from(numbers);
+    let words = |row: &&Vec<Cell>| {
+        row.len() == width && row.last().is_some_and(|c| is_word(&c.text, style.decimal_comma))
+    };
+    let labels = numbers && 2 * rows.iter().filter(words).count() > wide;
+    let (arity, numbers) = if labels { (width, false) } else { (arity, numbers) };
     let mut seen: BTreeMap<Vec<String>, Range<usize>> = BTreeMap::new();
     let mut tuples = Vec::new();
     let mut cells = BTreeMap::new();
@@ -340,6 +346,15 @@ mod tests {
         let cells = BTreeMap::from([(vec![label("Ash")], half)]);
         assert_eq!(instance.get("d"), Some(&Datum::Table { arity: 1, cells }));
         assert!(reading.facts.contains(&label("V is a set of 3 labels.")), "{:?}", reading.facts);
+    }
+
+    /// The origin of each commodity was "not a number", and could be given as pairs only.
+    #[test]
+    fn labels_over_indices_are_tuples_that_end_with_them() {
+        let reading = read("K\none two\n\no by k\none Ash\ntwo Birch\n", None);
+        let rows = [["one", "Ash"], ["two", "Birch"]].map(|row| row.map(str::to_owned).to_vec());
+        let wanted = Datum::Tuples { arity: 2, rows: rows.to_vec() };
+        assert_eq!(reading.instance.unwrap().get("o"), Some(&wanted));
     }
 
     /// Facts on round trips (the triangle inequality, "there is no round") were once told of

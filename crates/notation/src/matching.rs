@@ -93,8 +93,9 @@ pub fn matches(
             && instance.get(letters).is_some()
             && !symbols.iter().any(|symbol| symbol.name == letters)
         {
-            matcher.taken.insert(id, (letters.to_owned(), Found::Assumed));
-            matcher.reasons.insert(id, "the same letters, set in another way".to_owned());
+            matcher.take_letters(id, letters);
+        } else if let Some(spelt) = spelt_alike(name, symbols, instance) {
+            matcher.take_letters(id, spelt);
         }
     }
     // tables first: their labels tell the sets apart
@@ -150,6 +151,30 @@ fn letters(name: &str) -> Option<&str> {
     (is_type && !letters.contains(' ')).then_some(letters)
 }
 
+/// `c_NL` for `c^{\text{NL}}`, `Pmax` for `P_{\max}`: the one datum with the same letters and
+/// digits, unless the formulation has that name as well.
+fn spelt_alike<'i>(name: &str, symbols: &[Symbol], instance: &'i Instance) -> Option<&'i str> {
+    let wanted = letters_and_digits(name);
+    let alike = instance.data().map(|(datum, _)| datum).filter(|datum| {
+        letters_and_digits(datum) == wanted && symbols.iter().all(|symbol| symbol.name != **datum)
+    });
+    let alike: Vec<&str> = alike.take(2).collect();
+    let twin = symbols.iter().filter(|symbol| letters_and_digits(&symbol.name) == wanted).count();
+    match alike[..] {
+        [only] if twin == 1 && !wanted.is_empty() => Some(only),
+        _ => None,
+    }
+}
+
+/// The letters and digits of a name, without the commands that only set them.
+fn letters_and_digits(name: &str) -> String {
+    let mut plain = name.to_owned();
+    for command in ["\\text", "\\mathrm", "\\mathcal", "\\mathscr", "\\mathbf", "\\boldsymbol"] {
+        plain = plain.replace(command, "");
+    }
+    plain.chars().filter(|c| c.is_alphanumeric()).collect()
+}
+
 struct Matcher<'m> {
     text: &'m str,
     symbols: &'m [Symbol],
@@ -159,6 +184,12 @@ struct Matcher<'m> {
 }
 
 impl Matcher<'_> {
+    /// Takes a datum whose name has the same letters.
+    fn take_letters(&mut self, id: SymbolId, datum: &str) {
+        self.taken.insert(id, (datum.to_owned(), Found::Assumed));
+        self.reasons.insert(id, "the same letters, set in another way".to_owned());
+    }
+
     /// Takes the only datum that suits a line best, unless the line has one or a default.
     fn assume(&mut self, id: SymbolId) {
         let symbol = &self.symbols[id];
@@ -464,6 +495,23 @@ mod tests {
         assert_eq!((lines[0].1.as_deref(), lines[0].2), (Some("J"), Found::Assumed));
         let lines = found(&format!("data\n  \\mathcal{{J}}\n  J\n{model}"));
         assert_eq!(lines.iter().filter(|line| line.1.as_deref() == Some("J")).count(), 1);
+    }
+
+    /// `c^{\text{NL}}` asked for a table of that very name; a sheet calls it `c_NL` or `cNL`.
+    #[test]
+    fn a_name_in_words_is_found_by_its_letters() {
+        let text = "data\n  I\n  c^{\\text{NL}}_i ∀ i ∈ I\n  c^{\\text{SU}}_i ∀ i ∈ I\nminimise\n  \
+            Σ_{i ∈ I} (c^{\\text{NL}}_i + c^{\\text{SU}}_i) x_i\nsubject to\n  x_i ≥ 1  ∀ i ∈ I\n";
+        let table = |names: [&str; 2]| {
+            format!("I\na b\n\n{} by i\na 1\nb 2\n\n{} by i\na 3\nb 4\n", names[0], names[1])
+        };
+        for names in [["c_NL", "c_SU"], ["cNL", "cSU"]] {
+            let lines = matched(text, &table(names), &[]);
+            let found: Vec<_> = lines[1..].iter().filter_map(|line| line.taken.clone()).collect();
+            assert_eq!(found, names, "{lines:?}");
+        }
+        let lines = matched(text, &table(["c_NL", "cNL"]), &[]);
+        assert_eq!(lines[1].found, Found::Nothing, "two are spelt alike: {lines:?}");
     }
 
     /// A set of pairs was taken from the cells of a table only when its name was A.

@@ -47,6 +47,8 @@ pub(super) fn sign(c: char) -> Option<Kind> {
         '}' => Kind::RightBrace,
         '[' => Kind::LeftBracket,
         ']' => Kind::RightBracket,
+        '⟦' => Kind::LeftWhole,
+        '⟧' => Kind::RightWhole,
         '|' => Kind::Bar,
         '⌊' => Kind::LeftFloor,
         '⌋' => Kind::RightFloor,
@@ -167,6 +169,8 @@ pub(super) fn command(name: &str) -> Option<Kind> {
         "frac" | "tfrac" | "dfrac" | "nicefrac" | "sfrac" | "cfrac" => Kind::Fraction,
         "lbrack" => Kind::LeftBracket,
         "rbrack" => Kind::RightBracket,
+        "llbracket" => Kind::LeftWhole,
+        "rrbracket" => Kind::RightWhole,
         "coloneqq" | "triangleq" | "doteq" => Kind::Equal,
         "R" | "Re" | "reals" | "RR" => Kind::Reals,
         "Z" | "ZZ" | "integers" => Kind::Integers,
@@ -257,6 +261,8 @@ const LETTERS: &[(&str, &str)] = &[
     ("imath", "ı"),
     ("jmath", "ȷ"),
     ("prime", "'"),
+    ("top", "⊤"),
+    ("intercal", "⊤"),
 ];
 
 /// A letter that stands for a TeX command, as a name.

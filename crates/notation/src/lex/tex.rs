@@ -50,9 +50,17 @@ impl Lexer<'_> {
 
     /// `V \ {r}` is a set difference; `\ ` elsewhere is a space.
     fn difference_or_space(&mut self, rest: &str) {
-        let next = rest.trim_start_matches([' ', '\t']).chars().next();
-        let set = next
-            .is_some_and(|c| c == '{' || self.environment == 0 && (c == '(' || c.is_uppercase()));
+        let after = rest.trim_start_matches([' ', '\t']);
+        // x_j ∈ {0,1}\ (j = 1,…,n)
+        let quantifier = after.starts_with('(')
+            && after
+                .split(')')
+                .next()
+                .is_some_and(|inner| ["=", "\\in", "∈"].iter().any(|sign| inner.contains(sign)));
+        let set =
+            after.chars().next().filter(|_| !quantifier).is_some_and(|c| {
+                c == '{' || self.environment == 0 && (c == '(' || c.is_uppercase())
+            });
         let last = |back: usize| self.tokens.iter().rev().nth(back).map(|t| t.kind);
         let behind = match last(0) {
             // V_0 \ {r}

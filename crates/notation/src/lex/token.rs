@@ -59,6 +59,9 @@ pub(crate) enum Kind {
     RightBrace,
     LeftBracket,
     RightBracket,
+    /// `⟦`, before the ends of a range of whole numbers
+    LeftWhole,
+    RightWhole,
     Bar,
     LeftFloor,
     RightFloor,
@@ -135,6 +138,7 @@ impl Kind {
             Self::LeftParen
                 | Self::LeftBrace
                 | Self::LeftBracket
+                | Self::LeftWhole
                 | Self::LeftFloor
                 | Self::LeftCeiling
         )
@@ -146,6 +150,7 @@ impl Kind {
             Self::RightParen
                 | Self::RightBrace
                 | Self::RightBracket
+                | Self::RightWhole
                 | Self::RightFloor
                 | Self::RightCeiling
         )

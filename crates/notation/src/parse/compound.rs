@@ -210,7 +210,7 @@ fn share_clauses(lines: &mut [Line]) {
 pub(crate) fn needed(line: &Line, clauses: &[Clause]) -> Vec<Clause> {
     let mut wanted = BTreeSet::new();
     let operands = line.left.iter().chain(line.links.iter().map(|(_, operand)| operand));
-    operands.for_each(|operand| free_words(operand, &mut wanted));
+    operands.for_each(|operand| free_words(operand, &mut Vec::new(), &mut wanted));
     let clauses: Vec<Clause> = clauses.iter().map(with_own_sets).collect();
     let items: Vec<&Expression> =
         clauses.iter().flat_map(|c| c.items.iter().chain(&c.such_that)).collect();
@@ -220,13 +220,8 @@ pub(crate) fn needed(line: &Line, clauses: &[Clause]) -> Vec<Clause> {
     // the set of one index may hold another
     let mut kept = BTreeSet::new();
     loop {
-        let mentioned = |name: &&str| {
-            let inside =
-                |word: &&str| *word == *name || name.chars().count() == 1 && word.contains(*name);
-            wanted.iter().any(inside)
-        };
         let more: Vec<&str> =
-            all.iter().copied().filter(|n| !kept.contains(n) && mentioned(n)).collect();
+            all.iter().copied().filter(|n| !kept.contains(n) && wanted.contains(n)).collect();
         if more.is_empty() {
             break;
         }
@@ -240,7 +235,7 @@ pub(crate) fn needed(line: &Line, clauses: &[Clause]) -> Vec<Clause> {
                 continue;
             }
             if binds.iter().any(|name| kept.contains(name)) {
-                words(item, &mut wanted);
+                free_words(item, &mut Vec::new(), &mut wanted);
             }
         }
     }
@@ -306,22 +301,24 @@ fn members(item: &Expression) -> BTreeSet<&str> {
     names
 }
 
-/// The words of an expression but those that its own sums bind.
-fn free_words<'e>(expression: &'e Expression, found: &mut BTreeSet<&'e str>) {
-    let Kind::Big(_, clause, body) = &expression.kind else {
-        if let Kind::Name(name) | Kind::Call(name, _) = &expression.kind {
-            found.insert(&name.text);
-        }
-        children(expression).into_iter().for_each(|child| free_words(child, found));
-        return;
-    };
-    let mut inner = BTreeSet::new();
-    free_words(body, &mut inner);
-    let items = || clause.items.iter().chain(&clause.such_that);
-    items().for_each(|item| free_words(item, &mut inner));
-    let mut own = BTreeSet::new();
-    items().for_each(|item| own.extend(members(item)));
-    found.extend(inner.difference(&own));
+/// The words of an expression and their letters (`kj` is k and j) but those that its own sums bind.
+fn free_words<'e>(
+    expression: &'e Expression,
+    bound: &mut Vec<&'e str>,
+    found: &mut BTreeSet<&'e str>,
+) {
+    let outside = bound.len();
+    if let Kind::Big(_, clause, _) = &expression.kind {
+        let mut own = BTreeSet::new();
+        clause.items.iter().chain(&clause.such_that).for_each(|item| own.extend(members(item)));
+        bound.extend(own);
+    }
+    if let Kind::Name(name) | Kind::Call(name, _) = &expression.kind {
+        let letters = name.text.char_indices().map(|(at, c)| &name.text[at..at + c.len_utf8()]);
+        found.extend(letters.chain([name.text.as_str()]).filter(|word| !bound.contains(word)));
+    }
+    children(expression).into_iter().for_each(|child| free_words(child, bound, found));
+    bound.truncate(outside);
 }
 
 /// The label of a line of several statements is that of its first row.

@@ -170,6 +170,9 @@ impl Parser<'_> {
         if open {
             return self.named_objective();
         }
+        if let Some(at) = self.set_form_behind_data() {
+            return Some(at);
+        }
         // (P) min …, behind data
         let named = self.peek() == T::LeftParen && self.tokens[self.at].gap.has(Gap::NEWLINE);
         let close = if named { self.closing(self.at)? } else { return None };

@@ -7,15 +7,22 @@ use super::Parser;
 use super::compound::needed;
 use crate::check::{children, words};
 use crate::diagnostic::names as message;
+use crate::place::Span;
 use crate::syntax::{Clause, Expression, Formulation, Kind, Line, Name, Relation};
 
 /// How many different index tuples of one variable are sought.
 const KINDS: usize = 4;
 
-/// What is sought, and where each was found first.
+/// How many places of one variable are compared.
+const PLACES: usize = 16;
+
+/// A variable with its indices, and the quantifiers around it in each place.
+type Sought = (Name, Vec<Vec<Clause>>);
+
+/// What is sought, and where it was found.
 #[derive(Default)]
 struct Uses {
-    wanted: BTreeMap<String, Vec<(Name, Vec<Clause>)>>,
+    wanted: BTreeMap<String, Vec<Sought>>,
 }
 
 impl Parser<'_> {
@@ -41,16 +48,37 @@ impl Parser<'_> {
             let operands = line.left.iter().chain(line.links.iter().map(|(_, operand)| operand));
             operands.for_each(|operand| uses.walk(operand, &mut context));
         }
-        let mut statements = std::mem::take(&mut tree.statements);
-        for line in &mut statements {
-            let found = self.without_quantifier(line).iter().find_map(|name| uses.of(name));
-            let Some(clauses) = found.map(|context| needed(line, context)) else { continue };
-            if self.binds_all(line, &clauses) {
-                self.tell(&clauses, line);
-                line.clauses = clauses;
-            }
+        for line in std::mem::take(&mut tree.statements) {
+            let lines = match self.quantified(&line, &uses) {
+                Some(whole) => vec![whole],
+                None => self.quantified_apart(&line, &uses).unwrap_or_else(|| vec![line]),
+            };
+            tree.statements.extend(lines);
         }
-        tree.statements = statements;
+    }
+
+    /// A domain line with the quantifier of one of its variables that binds the indices of all.
+    fn quantified(&mut self, line: &Line, uses: &Uses) -> Option<Line> {
+        let contexts = self.without_quantifier(line).into_iter().filter_map(|name| uses.of(name));
+        let mut found = contexts.map(|context| needed(line, context));
+        let clauses = found.find(|clauses| self.binds_all(line, clauses))?;
+        self.tell(&clauses, line);
+        Some(Line { clauses, ..line.clone() })
+    }
+
+    /// `u_i, v_j ≥ 0`: no one place binds the indices of all, so each variable has its own line.
+    fn quantified_apart(&mut self, line: &Line, uses: &Uses) -> Option<Vec<Line>> {
+        let names = self.without_quantifier(line).len();
+        if names < 2 || names != line.left.len() || line.label.is_some() {
+            return None;
+        }
+        let own = |left: &Expression| Line { left: vec![left.clone()], ..line.clone() };
+        let quantified = |left| {
+            let alone = own(left);
+            let bound = self.without_quantifier(&alone).is_empty();
+            if bound { Some(alone) } else { self.quantified(&alone, uses) }
+        };
+        line.left.iter().map(quantified).collect()
     }
 
     /// The variables of a domain line that has indices and no quantifier.
@@ -131,19 +159,22 @@ impl Parser<'_> {
 }
 
 impl Uses {
+    /// The quantifiers around the first place that asks least of the indices.
     fn of(&self, name: &Name) -> Option<&[Clause]> {
         let kinds = self.wanted.get(&name.text)?;
-        let (_, context) = kinds.iter().find(|(known, _)| known == name)?;
-        (!context.is_empty()).then_some(context)
+        let (_, places) = kinds.iter().find(|(known, _)| known == name)?;
+        let least = places.iter().min_by_key(|place| asked(name, place))?;
+        Some(least)
     }
 
     fn walk(&mut self, expression: &Expression, context: &mut Vec<Clause>) {
         if let Kind::Name(name) = &expression.kind
             && let Some(kinds) = self.wanted.get_mut(&name.text)
             && let Some((_, found)) = kinds.iter_mut().find(|(known, _)| known == name)
-            && found.is_empty()
+            && found.len() < PLACES
+            && !context.is_empty()
         {
-            found.clone_from(context);
+            found.push(context.clone());
         }
         let Kind::Big(_, clause, body) = &expression.kind else {
             for child in children(expression) {
@@ -155,4 +186,31 @@ impl Uses {
         self.walk(body, context);
         context.pop();
     }
+}
+
+/// How much a place asks of a variable's indices: the conditions on them, and the tuples that hold
+/// further indices (`(j,m,k) ∈ P` around `s_{jm}`).
+fn asked(name: &Name, context: &[Clause]) -> usize {
+    let line = Line {
+        left: vec![Expression { kind: Kind::Name(name.clone()), span: Span::default() }],
+        links: Vec::new(),
+        clauses: Vec::new(),
+        label: None,
+        remark: None,
+        span: Span::default(),
+    };
+    let mut own = BTreeSet::new();
+    name.indices.iter().for_each(|index| words(index, &mut own));
+    let letter = |word: &str| own.iter().any(|index| *index == word || index.contains(word));
+    let foreign = |item: &Expression| {
+        let Kind::Chain(first, links) = &item.kind else { return true };
+        let mut bound = BTreeSet::new();
+        words(first, &mut bound);
+        links.len() != 1 || links[0].0 != Relation::In || !bound.into_iter().all(letter)
+    };
+    let clauses = needed(&line, context);
+    let asks = |clause: &Clause| {
+        clause.such_that.len() + clause.items.iter().filter(|item| foreign(item)).count()
+    };
+    clauses.iter().map(asks).sum()
 }

@@ -9,6 +9,7 @@ mod document;
 mod expression;
 mod graph;
 mod implied;
+mod inner;
 mod line;
 mod literal;
 mod name;
@@ -72,6 +73,7 @@ pub fn parse(text: &str) -> Parse {
     let mut tree = parser.document();
     tree.title = title;
     called::settled(&mut tree);
+    inner::summed(&mut tree);
     literal::joined(&mut tree);
     twofold::parted(&mut tree);
     parser.imply_quantifiers(&mut tree);

@@ -87,11 +87,24 @@ impl Parser<'_> {
 
     /// Whether braces with a colon and another relation stand at a place.
     fn at_set_form(&self, open: usize) -> bool {
+        if self.tokens.get(open).is_none_or(|t| t.kind != T::LeftBrace) {
+            return false;
+        }
         let Some(close) = self.closing(open) else { return false };
         let inner = &self.tokens[open..close];
-        self.tokens[open].kind == T::LeftBrace
-            && inner.iter().any(|t| matches!(t.kind, T::Colon | T::SuchThat | T::Bar))
+        inner.iter().any(|t| matches!(t.kind, T::Colon | T::SuchThat | T::Bar))
             && inner.iter().any(|t| t.kind.is_relation() && t.kind != T::In)
+    }
+
+    /// `z = min { … : … }`, `Find min { … : … }` behind the data: the place of the word.
+    pub(super) fn set_form_behind_data(&self) -> Option<usize> {
+        let first = &self.tokens[self.at];
+        if first.kind != T::Word || !first.gap.has(Gap::NEWLINE) {
+            return None;
+        }
+        let named = if self.ahead(1) == T::Equal { 2 } else { 1 };
+        let sense = matches!(self.ahead(named), T::Min | T::Max);
+        (sense && self.at_set_form(self.at + named + 1)).then_some(self.at + named)
     }
 
     /// `max { Σ p x : Σ w x ≤ c, x ∈ {0,1} }` as an objective and its constraints: the braces

@@ -14,6 +14,7 @@ impl Parser<'_> {
             T::Word if !self.at_prime(0) => self.name(),
             T::LeftParen => self.parenthesis(),
             T::LeftBracket => self.interval(),
+            T::LeftWhole => self.whole_numbers(),
             T::Bar => self.bars(),
             T::LeftFloor => self.between(Function::Floor, T::RightFloor, "“⌋”"),
             T::LeftCeiling => self.between(Function::Ceiling, T::RightCeiling, "“⌉”"),
@@ -130,6 +131,27 @@ impl Parser<'_> {
             _ => {
                 let span = self.since(start);
                 Err(self.report(message::expected(span, "two ends of an interval", "more")))
+            }
+        }
+    }
+
+    /// `⟦1,n⟧` is `{1..n}`, as is `⟦n⟧`.
+    fn whole_numbers(&mut self) -> Read<Expression> {
+        let start = self.here();
+        self.bump();
+        let mut ends = self.bracketed(T::RightWhole, "“⟧”")?;
+        let one = || Expression { kind: Kind::Number(model::Number::ONE), span: start };
+        match (ends.pop(), ends.pop(), ends.is_empty()) {
+            (Some(range), None, true) if matches!(range.kind, Kind::Range(..)) => {
+                Ok(Expression { span: self.since(start), ..range })
+            }
+            (Some(last), first, true) => {
+                let first = first.unwrap_or_else(one);
+                Ok(self.make(Kind::Range(Box::new(first), Box::new(last)), start))
+            }
+            _ => {
+                let span = self.since(start);
+                Err(self.report(message::expected(span, "two ends of a range", "more")))
             }
         }
     }

@@ -9,9 +9,9 @@ use record::pack::Pack;
 use record::results::RivalResult;
 use record::scenario::{Scenario, letter};
 use record::study::{Line, Report};
-use record::typeset::Typeset;
 use report::csv::csv;
 use report::decision::{self, Evidence};
+use report::study::over_instances;
 
 use crate::ending::Ending;
 use crate::options::Form;
@@ -56,6 +56,8 @@ pub(crate) fn record(
             studies.extend(reports.into_iter().map(|report| (title.clone(), report)));
         }
     }
+    let over = over_instances(&studies);
+    studies.extend(over.into_iter().map(|report| (String::new(), report)));
     Ok((set(scenario, form, &results, &studies), ending))
 }
 
@@ -71,7 +73,8 @@ fn set(
             engine::notation_text(scenario, rival).map_or_else(|_| String::new(), |it| it.text)
         })
         .collect();
-    let typeset: Vec<Typeset> = statements.iter().map(|text| engine::typeset(text)).collect();
+    let typeset: Vec<String> =
+        statements.iter().map(|text| decision::mathml(&engine::typeset(text))).collect();
     let unit = scenario.instance.as_ref().map(|text| engine::instance_report(text).unit);
     let link = link::pack(&file::print(scenario)).unwrap_or_default();
     let link = if link.len() > link::OFTEN_CUT { String::new() } else { link };

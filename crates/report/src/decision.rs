@@ -11,13 +11,13 @@ mod reopen;
 mod svg;
 
 pub(crate) use html::escaped;
+pub use mathml::mathml;
 use record::results::{Proof, RivalResult, Status};
 use record::scenario::{Rival, Scenario, letter};
 use record::study::Report;
-use record::typeset::Typeset;
 
 use crate::number::{count, of, percent, short, ten_digits};
-use crate::study::{Figure, Section, Table, and, over_instances, overview, sections};
+use crate::study::{Figure, Section, Table, and, overview, sections};
 
 /// Stands at the end of every record.
 const CAUTION: &str = "A plan that comes out of a model is a decision aid; driving, working-time, \
@@ -36,8 +36,8 @@ pub struct Evidence<'e> {
     pub facts: &'e [String],
     /// The notation of each rival; empty for a model in MPS.
     pub statements: &'e [String],
-    /// The same set as mathematics; none, or empty, where it is not set.
-    pub typeset: &'e [Typeset],
+    /// The same set as mathematics by [`mathml()`]; none, or empty, where it is not set.
+    pub typeset: &'e [String],
     /// The unit of the objective ("minutes"); empty where the data name none.
     pub unit: &'e str,
     /// The engine's version.
@@ -60,8 +60,8 @@ enum Block {
     /// A drawing, as SVG of our own.
     Figure(String),
     Code(String),
-    /// A formulation set as mathematics, and its notation.
-    Formulation(Typeset, String),
+    /// A formulation set as mathematics, of our own making, and its notation.
+    Formulation(String, String),
 }
 
 /// The record as one HTML file that needs nothing else and prints on A4 and Letter.
@@ -121,9 +121,6 @@ fn blocks(evidence: &Evidence<'_>) -> Vec<Block> {
     if !evidence.studies.is_empty() {
         out.push(Block::Heading("Evidence".to_owned()));
         out.extend(orders(evidence));
-        for report in over_instances(evidence.studies) {
-            out.extend(sections(&report).into_iter().flat_map(|found| section("", found)));
-        }
         for (instance, report) in evidence.studies {
             out.extend(sections(report).into_iter().flat_map(|found| section(instance, found)));
         }
@@ -310,7 +307,7 @@ fn statements(evidence: &Evidence<'_>) -> Vec<Block> {
     let texts = evidence.statements.iter().enumerate().filter(|(_, text)| !text.is_empty());
     let mut out: Vec<Block> = texts
         .flat_map(|(place, text)| {
-            let set = evidence.typeset.get(place).filter(|set| !set.rows.is_empty());
+            let set = evidence.typeset.get(place).filter(|set| !set.is_empty());
             let text = text.clone();
             let body = match set {
                 Some(set) => Block::Formulation(set.clone(), text),

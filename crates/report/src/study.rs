@@ -16,9 +16,10 @@ mod symmetry;
 mod tightening;
 mod variability;
 
+use record::results::SolutionEntry;
 use record::study::Report;
 
-use crate::number::short;
+use crate::number::{count, short};
 pub use hasse::{Figure, overview};
 pub use order::over_instances;
 
@@ -106,6 +107,23 @@ pub fn derived(report: &Report) -> Vec<(String, String)> {
     };
     let some = all.into_iter().filter(|(_, text)| !text.is_empty());
     some.map(|(words, text)| (words, text.clone())).collect()
+}
+
+/// The values of a plan, `x[a, b] = 1`, and beyond `most` how many more there are.
+fn entries(plan: &[SolutionEntry], most: usize) -> Vec<String> {
+    let mut out: Vec<String> = plan.iter().take(most).map(entry).collect();
+    if plan.len() > most {
+        out.push(format!("and {} more", count((plan.len() - most) as u64)));
+    }
+    out
+}
+
+fn entry(entry: &SolutionEntry) -> String {
+    let mut out = entry.variable.clone();
+    if !entry.indices.is_empty() {
+        out += &format!("[{}]", entry.indices.join(", "));
+    }
+    out + " = " + &short(entry.value)
 }
 
 /// A value that may be missing.

@@ -24,8 +24,14 @@ pub(super) fn choice(evidence: &Evidence<'_>) -> Vec<String> {
     if standings.len() < 2 {
         return Vec::new();
     }
-    standings.sort_by(|a, b| b.solved.cmp(&a.solved).then(a.work.total_cmp(&b.work)));
-    let ahead = &standings[0];
+    let mut first = 0;
+    for (place, one) in standings.iter().enumerate() {
+        let best = &standings[first];
+        if (one.solved > best.solved) || (one.solved == best.solved && one.work < best.work) {
+            first = place;
+        }
+    }
+    let ahead = standings.remove(first);
     let mut out = vec![decided(evidence)];
     if let Some(pair) = apart(evidence.studies) {
         out.push(format!(
@@ -49,16 +55,15 @@ pub(super) fn choice(evidence: &Evidence<'_>) -> Vec<String> {
         ahead.letter,
         short(ahead.work)
     ));
-    out.extend(standings[1..].iter().map(|other| why_not(evidence, ahead, other)));
+    out.extend(standings.iter().map(|other| why_not(evidence, &ahead, other)));
     out
 }
 
 fn decided(evidence: &Evidence<'_>) -> String {
-    // Up to the end of its paragraph.
-    let paragraphs = evidence.scenario.notes.split("\n\n");
-    let found = paragraphs.filter_map(|one| one.split_once(DECIDED)).next();
-    match found {
-        Some((_, choice)) => {
+    match evidence.scenario.notes.split_once(DECIDED) {
+        Some((_, rest)) => {
+            // Up to the end of its paragraph.
+            let choice = rest.find("\n\n").map_or(rest, |end| &rest[..end]);
             let choice: Vec<&str> = choice.split_whitespace().collect();
             format!("Decided, as the notes say: {}", choice.join(" "))
         }

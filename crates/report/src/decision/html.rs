@@ -2,7 +2,7 @@
 
 use std::fmt::Write;
 
-use super::{Block, mathml};
+use super::Block;
 use crate::notes::{Hand, Piece, Run, pieces};
 use crate::study::Table;
 
@@ -52,7 +52,7 @@ fn write_block(block: &Block, out: &mut String) {
         Block::Notes(text) => pieces(text).iter().for_each(|piece| write_piece(piece, out)),
         Block::Code(text) => out.push_str(&tag("pre", text)),
         Block::Formulation(set, text) => {
-            out.push_str(&mathml::set(set));
+            out.push_str(set);
             out.push_str(&tag("pre", text));
         }
         Block::List(items) => {

@@ -6,8 +6,12 @@ use record::typeset::{Element, Tag, Typeset, TypesetRow};
 use super::escaped;
 use crate::number::of;
 
-/// The lines as a table.
-pub(super) fn set(typeset: &Typeset) -> String {
+/// A formulation as HTML for [`super::Evidence::typeset`]; empty where there is no line.
+#[must_use]
+pub fn mathml(typeset: &Typeset) -> String {
+    if typeset.rows.is_empty() {
+        return String::new();
+    }
     let rows: String = typeset.rows.iter().map(row).collect();
     let more = if typeset.further > 0 {
         format!(
@@ -96,7 +100,7 @@ mod tests {
             words: "some".to_owned(),
             ..TypesetRow::default()
         };
-        let text = set(&Typeset { rows: vec![row], further: 2 });
+        let text = mathml(&Typeset { rows: vec![row], further: 2 });
         let left = "<td class=\"l\"><math displaystyle=\"true\"><mi>x&lt;y</mi></math></td>";
         assert!(text.contains(left), "{text}");
         assert!(text.contains("<td>(some)</td>") && text.contains("and 2 further lines"), "{text}");

@@ -6,7 +6,7 @@ use record::study::{
     Evidence, Mutant,
 };
 
-use super::{Section, Table, and, plans};
+use super::{Section, Table, and, entries, plans};
 use crate::number::{count, of, short};
 
 /// Values of a plan that are written out at most.
@@ -164,27 +164,10 @@ fn rows(example: &Counterexample) -> Option<String> {
 }
 
 fn plan(plan: &[SolutionEntry]) -> String {
-    let mut words: Vec<String> = plan
-        .iter()
-        .take(MOST_VALUES)
-        .map(|entry| {
-            let index = entry.indices.join(", ");
-            let name = if index.is_empty() {
-                entry.variable.clone()
-            } else {
-                format!("{}[{index}]", entry.variable)
-            };
-            format!("{name} = {}", short(entry.value))
-        })
-        .collect();
-    if words.is_empty() {
-        words.push("every shared variable is 0".to_owned());
+    if plan.is_empty() {
+        return "every shared variable is 0".to_owned();
     }
-    let more = plan.len().saturating_sub(MOST_VALUES);
-    if more > 0 {
-        words.push(format!("and {} more", count(more as u64)));
-    }
-    words.join(", ")
+    entries(plan, MOST_VALUES).join(", ")
 }
 
 fn notes(verdict: &Equivalence) -> Vec<String> {

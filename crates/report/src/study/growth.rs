@@ -1,7 +1,5 @@
 //! The growth study in words.
 
-use std::collections::BTreeSet;
-
 use record::study::{Fit, Growth, GrowthPair, SizeMean};
 
 use super::{Section, Table};
@@ -60,7 +58,12 @@ fn sizes(growth: &Growth) -> Section {
 
 /// Of what the intervals speak.
 fn sources(growth: &Growth) -> Option<String> {
-    let instances: BTreeSet<&String> = growth.cells.iter().map(|cell| &cell.instance).collect();
+    let mut instances: Vec<&String> = Vec::new();
+    for cell in &growth.cells {
+        if !instances.contains(&&cell.instance) {
+            instances.push(&cell.instance);
+        }
+    }
     let own = growth.cells.iter().all(|cell| cell.class.is_empty());
     match instances.len() {
         _ if !own => None,

@@ -3,12 +3,10 @@
 //! alone. Plans that are no pairs of few elements are written value by value, with a dot before what is in
 //! one of them alone.
 
-use std::collections::BTreeSet;
-
 use record::results::SolutionEntry;
 use record::study::Counterexample;
 
-use super::Figure;
+use super::{Figure, entries};
 use crate::spring::places;
 
 /// Elements at most that are drawn.
@@ -47,14 +45,12 @@ fn listed(example: &Counterexample) -> Option<Figure> {
     let plans = [(&example.plan, &example.nearest), (&example.nearest, &example.plan)];
     for (side, (plan, other)) in plans.into_iter().enumerate() {
         let alone = |entry: &SolutionEntry| !other.is_empty() && !other.contains(entry);
-        let mut lines: Vec<String> = plan
-            .iter()
-            .take(MOST_VALUES)
-            .map(|entry| format!("{} {}", if alone(entry) { "•" } else { " " }, value(entry)))
+        let mark = |place: usize| plan.get(place).is_some_and(alone);
+        let lines: Vec<String> = entries(plan, MOST_VALUES)
+            .into_iter()
+            .enumerate()
+            .map(|(place, text)| if mark(place) { "• ".to_owned() + &text } else { text })
             .collect();
-        if plan.len() > MOST_VALUES {
-            lines.push(format!("  and {} more", plan.len() - MOST_VALUES));
-        }
         rows = rows.max(lines.len());
         let x = side * whole(SIDE) + 12;
         let placed = lines.into_iter().enumerate();
@@ -62,15 +58,6 @@ fn listed(example: &Counterexample) -> Option<Figure> {
     }
     out.size.1 = whole(HEAD) + LINE * (rows + 1);
     Some(out)
-}
-
-/// `x[a, b] = 1`.
-fn value(entry: &SolutionEntry) -> String {
-    let value = crate::number::short(entry.value);
-    match entry.indices.as_slice() {
-        [] => format!("{} = {value}", entry.variable),
-        some => format!("{}[{}] = {value}", entry.variable, some.join(", ")),
-    }
 }
 
 /// The drawing with its words and no plan.
@@ -113,14 +100,14 @@ fn circles(example: &Counterexample) -> Option<Figure> {
 }
 
 /// The pairs that a plan uses; `None` where it uses anything else.
-fn pairs(plan: &[SolutionEntry]) -> Option<BTreeSet<(&str, &str)>> {
+fn pairs(plan: &[SolutionEntry]) -> Option<Pairs<'_>> {
     let pair = |entry: &SolutionEntry| entry.indices.len() == 2 && entry.value > 0.5;
     plan.iter().all(pair).then(|| {
         plan.iter().map(|entry| (entry.indices[0].as_str(), entry.indices[1].as_str())).collect()
     })
 }
 
-type Pairs<'p> = BTreeSet<(&'p str, &'p str)>;
+type Pairs<'p> = Vec<(&'p str, &'p str)>;
 
 fn draw(out: &mut Figure, side: f64, elements: &[&str], (plan, other): (&Pairs, &Pairs)) {
     let centre = (side * SIDE + SIDE / 2.0, HEAD + SIDE / 2.0);

@@ -1,9 +1,8 @@
 //! Tightening in words.
 
-use record::results::SolutionEntry;
 use record::study::{FamilyTightening, RivalTightening, Tightening, TooSmall};
 
-use super::{Section, Table, value};
+use super::{Section, Table, entries, value};
 use crate::number::{count, of, short};
 
 pub(super) fn sections(tightening: &Tightening) -> Vec<Section> {
@@ -82,15 +81,6 @@ const MOST_VALUES: usize = 12;
 
 /// That a row cuts off a plan though its binary opens it.
 fn too_small(found: &TooSmall) -> String {
-    let value = |entry: &SolutionEntry| match entry.indices.as_slice() {
-        [] => format!("{} = {}", entry.variable, short(entry.value)),
-        some => format!("{}[{}] = {}", entry.variable, some.join(", "), short(entry.value)),
-    };
-    let mut plan: Vec<String> = found.plan.iter().take(MOST_VALUES).map(value).collect();
-    let more = found.plan.len().saturating_sub(MOST_VALUES);
-    if more > 0 {
-        plan.push(format!("and {} more", count(more as u64)));
-    }
     format!(
         "{} is more than a switch ({}): with {} = {}, which opens it, the rest may be at most {}, and in a \
          plan that every other row admits it is {}. If it is meant to switch alone, {} is too small and {} \
@@ -103,7 +93,7 @@ fn too_small(found: &TooSmall) -> String {
         short(found.reaches),
         short(found.coefficient),
         short(found.needs),
-        plan.join(", ")
+        entries(&found.plan, MOST_VALUES).join(", ")
     )
 }
 

@@ -33,9 +33,7 @@ impl Change {
 /// What is another, in the order of the page; empty where nothing is, or where the two are strangers.
 #[must_use]
 pub fn changes(before: &Scenario, after: &Scenario) -> Vec<Change> {
-    let common =
-        after.rivals.iter().any(|rival| twin(rival, &before.rivals).is_some()) || before == after;
-    if !common {
+    if twins(&before.rivals, &after.rivals).is_empty() && before != after {
         return Vec::new();
     }
     let mut found = Vec::new();
@@ -74,28 +72,57 @@ fn name(rival: &Rival) -> &str {
     if rival.title.is_empty() { rival.from.as_deref().unwrap_or_default() } else { &rival.title }
 }
 
-fn twin<'a>(rival: &Rival, others: &'a [Rival]) -> Option<&'a Rival> {
-    others.iter().find(|other| name(other) == name(rival))
+/// What a rival says, in whatever form it is given.
+fn formulation(rival: &Rival) -> &str {
+    let forms = [&rival.text, &rival.mps, &rival.from];
+    forms.into_iter().flatten().next().map_or("", String::as_str)
+}
+
+/// Which rivals of before and after are the same one, by place: first those that say the same, by
+/// title or else by their families; then those of the same title. So one that was renamed stays itself.
+fn twins(before: &[Rival], after: &[Rival]) -> Vec<(usize, usize)> {
+    type Same = fn(&Rival, &Rival) -> bool;
+    let says: Same = |old, new| formulation(old) == formulation(new);
+    let named: Same = |old, new| name(old) == name(new);
+    let passes: [Same; 4] = [
+        |old, new| formulation(old) == formulation(new) && name(old) == name(new),
+        |old, new| formulation(old) == formulation(new) && old.families == new.families,
+        says,
+        named,
+    ];
+    let mut pairs: Vec<(usize, usize)> = Vec::new();
+    for same in passes {
+        for (place, new) in after.iter().enumerate() {
+            let taken = |old: usize| pairs.iter().any(|pair| pair.0 == old);
+            if pairs.iter().any(|pair| pair.1 == place) {
+                continue;
+            }
+            let mut free = before.iter().enumerate().filter(|(old, _)| !taken(*old));
+            if let Some((old, _)) = free.find(|(_, old)| same(old, new)) {
+                pairs.push((old, place));
+            }
+        }
+    }
+    pairs.sort_by_key(|pair| pair.1);
+    pairs
 }
 
 fn rivals(before: &Scenario, after: &Scenario) -> Vec<Change> {
-    let mut found = Vec::new();
-    for rival in &before.rivals {
-        if twin(rival, &after.rivals).is_none() {
-            found.push(Change::plain(format!("{} is gone.", name(rival))));
-        }
-    }
-    for rival in &after.rivals {
-        match twin(rival, &before.rivals) {
-            Some(old) => found.extend(within(old, rival)),
+    let pairs = twins(&before.rivals, &after.rivals);
+    let gone = before
+        .rivals
+        .iter()
+        .enumerate()
+        .filter(|(place, _)| pairs.iter().all(|pair| pair.0 != *place));
+    let mut found: Vec<Change> =
+        gone.map(|(_, rival)| Change::plain(format!("{} is gone.", name(rival)))).collect();
+    for (place, rival) in after.rivals.iter().enumerate() {
+        match pairs.iter().find(|pair| pair.1 == place) {
+            Some(&(old, _)) => found.extend(within(&before.rivals[old], rival)),
             None => found.push(Change::plain(format!("{} is new.", name(rival)))),
         }
     }
-    let order = |rivals: &[Rival], others: &[Rival]| -> Vec<String> {
-        let shared = rivals.iter().filter(|rival| twin(rival, others).is_some());
-        shared.map(|rival| name(rival).to_owned()).collect()
-    };
-    if order(&before.rivals, &after.rivals) != order(&after.rivals, &before.rivals) {
+    if !pairs.is_sorted_by_key(|pair| pair.0) {
         found.push(Change::plain("The rivals stand in another order.".to_owned()));
     }
     found
@@ -103,13 +130,13 @@ fn rivals(before: &Scenario, after: &Scenario) -> Vec<Change> {
 
 /// What is another within one rival.
 fn within(before: &Rival, after: &Rival) -> Vec<Change> {
-    let name = name(after);
-    let text = |rival: &Rival| {
-        rival.text.clone().or_else(|| rival.mps.clone()).or_else(|| rival.from.clone())
-    };
-    let (old, new) = (text(before).unwrap_or_default(), text(after).unwrap_or_default());
-    let mut found: Vec<Change> =
-        Change::text(&format!("{name} is written otherwise:"), &old, &new).into_iter().collect();
+    let (was, name) = (name(before), name(after));
+    let mut found = Vec::new();
+    if was != name {
+        found.push(Change::plain(format!("{was} is called {name} now.")));
+    }
+    let words = format!("{name} is written otherwise:");
+    found.extend(Change::text(&words, formulation(before), formulation(after)));
     let word = |state: Option<&record::scenario::FamilyState>| {
         state.map_or("as it comes", |state| state.word())
     };
@@ -168,6 +195,7 @@ mod tests {
         let mut other = scenario();
         for rival in &mut other.rivals {
             rival.title += " of ships";
+            rival.from = Some("cvrp/labels".to_owned());
         }
         assert!(told(&mine, &other).is_empty());
     }
@@ -185,8 +213,7 @@ mod tests {
         let expected = [
             "The title was “Round”.",
             "The instance has other data:",
-            "Labels is gone.",
-            "Flow is new.",
+            "Labels is called Flow now.",
             "Subtours: (subtour) is out; it was as it comes.",
             "Limits and rules are others:",
             "The notes are others:",
@@ -196,6 +223,26 @@ mod tests {
         let data: Vec<(bool, &str)> =
             data.iter().map(|line| (line.first, line.text.as_str())).collect();
         assert_eq!(data, [(true, "b 2"), (false, "b 3")]);
+    }
+
+    // A rival that a teammate renamed was told as one that is gone and one that is new.
+    #[test]
+    fn a_renamed_rival_is_the_same_one() {
+        let (before, mut after) = (scenario(), scenario());
+        after.rivals[0].title = "Subtours".to_owned();
+        after.rivals[1].title = "Cuts of the round".to_owned();
+        let words = ["Labels is called Subtours now.", "Subtours is called Cuts of the round now."];
+        assert_eq!(told(&before, &after), words);
+        // A copy beside it is new, whichever of the two stands first.
+        let mut copied = scenario();
+        copied.rivals.insert(0, Rival { title: "Copy".to_owned(), ..copied.rivals[0].clone() });
+        assert_eq!(told(&before, &copied), ["Copy is new."]);
+        // One that was written anew under its title is the same, one with neither is not.
+        let mut anew = scenario();
+        anew.rivals[0].from = Some("atsp/flow".to_owned());
+        assert_eq!(told(&before, &anew), ["Labels is written otherwise:"]);
+        anew.rivals[0].title = "Flow".to_owned();
+        assert_eq!(told(&before, &anew), ["Labels is gone.", "Flow is new."]);
     }
 
     #[test]

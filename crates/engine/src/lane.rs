@@ -398,12 +398,7 @@ impl Lane {
             Stage::Over(Some(mut solver)) => {
                 self.hand_over(act, &mut solver, outbox);
                 // An act that raises the limit at which it ended lets the search go on.
-                if solver.search.is_over() {
-                    Stage::Over(Some(solver))
-                } else {
-                    solver.search.run(None);
-                    Stage::Running(solver)
-                }
+                self.go_on(solver)
             }
             earlier => {
                 let acted = map::refused(act, 0, false, "there is no search yet".to_owned());
@@ -411,6 +406,19 @@ impl Lane {
                 earlier
             }
         };
+    }
+
+    /// Lets a search that is not over any more go on, also where its root is not solved yet.
+    fn go_on(&mut self, mut solver: Box<Solver>) -> Stage {
+        if solver.search.is_over() {
+            return Stage::Over(Some(solver));
+        }
+        solver.search.run(None);
+        if solver.search.root().is_some() {
+            return Stage::Running(solver);
+        }
+        self.asked = Some(Goal::Nodes(None));
+        Stage::Root(solver)
     }
 
     fn hand_over(&self, act: &Act, solver: &mut Solver, outbox: &mut Outbox) {

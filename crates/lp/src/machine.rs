@@ -44,6 +44,8 @@ enum Phase {
 #[derive(Clone, Debug, Default)]
 pub(crate) struct Machine {
     phase: Phase,
+    /// Where the limit on iterations has stopped it.
+    left: Phase,
     limits: Limits,
     dual: DualState,
     primal: PrimalState,
@@ -70,6 +72,19 @@ impl Machine {
         self.begin_attempt(core);
     }
 
+    /// Goes on with a solve that its limit on iterations has stopped, with another limit; false where
+    /// there is none.
+    pub(crate) fn resume(&mut self, iterations: Option<u64>) -> bool {
+        let left = std::mem::take(&mut self.left);
+        if left == Phase::Finished {
+            return false;
+        }
+        self.outcome = None;
+        self.phase = left;
+        self.limits.iterations = iterations;
+        true
+    }
+
     /// True until there is an outcome.
     pub(crate) fn is_working(&self) -> bool {
         self.phase != Phase::Finished
@@ -80,6 +95,7 @@ impl Machine {
         self.outcome = None;
         self.extended = None;
         self.phase = Phase::Finished;
+        self.left = Phase::Finished;
     }
 
     fn finish(&mut self, outcome: Outcome) {
@@ -217,9 +233,17 @@ impl Machine {
         let done = core.iterations - self.began;
         let is_over = self.limits.iterations.is_some_and(|limit| done >= limit);
         if is_over {
-            self.stop(core, StopReason::Iterations);
+            self.leave(core);
         }
         is_over
+    }
+
+    /// Stops at the limit on iterations. All that the next step needs is kept, and neither this step
+    /// nor its look at the bound counts as work: going on is as if there had been no limit.
+    fn leave(&mut self, core: &mut Core) {
+        let (phase, extended, ticks) = (self.phase, self.extended.take(), core.ticks - 1);
+        self.stop(core, StopReason::Iterations);
+        (self.left, self.extended, core.ticks) = (phase, extended, ticks);
     }
 
     /// Stops at the limit on iterations, or ends an attempt that takes too many; true when it did.

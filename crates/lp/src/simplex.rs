@@ -154,6 +154,12 @@ impl Simplex {
         self.machine.start(&mut self.core, limits);
     }
 
+    /// Goes on with a solve that its limit on iterations has stopped, as if that had been `iterations`
+    /// from the start; false, and nothing done, where nothing was stopped so since the last change.
+    pub fn resume(&mut self, iterations: Option<u64>) -> bool {
+        self.machine.resume(iterations)
+    }
+
     /// Goes on with the solve for about this many nonzeros touched (at least one step).
     pub fn advance(&mut self, ticks: u64) -> Progress {
         let end = self.core.ticks.saturating_add(ticks);

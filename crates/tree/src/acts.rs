@@ -221,7 +221,7 @@ impl Search {
 
     /// Lets a search that its limit of nodes or of iterations has ended go on, where an act allows it
     /// more; it stands still until [`Self::run`]. A replay raises the limit in the same place, before it
-    /// is looked at. A root that its limit left unsolved does not go on.
+    /// is looked at. A root that ran out of iterations goes on in the middle of its LP.
     fn reopen(&mut self, act: &Act) -> bool {
         let Act::Rule(rule) = act else { return false };
         let reopens = match rule {
@@ -237,9 +237,27 @@ impl Search {
         };
         if reopens {
             self.change(rule);
-            (self.state, self.paused) = (State::Searching, true);
+            self.paused = true;
+            if !self.take_up_root() {
+                self.state = State::Searching;
+            }
         }
         reopens
+    }
+
+    /// Carries out what waits of changes to the limit of iterations: the root has none left.
+    pub(crate) fn carry_out_limits(&mut self) {
+        let nodes = self.ledger.nodes;
+        let (limits, others): (Vec<Waiting>, Vec<Waiting>) = self
+            .acts
+            .due(nodes)
+            .into_iter()
+            .partition(|waiting| matches!(waiting.act, Act::Rule(Rule::Iterations(_))));
+        self.acts.put_back(others);
+        for waiting in limits {
+            let refused = self.carry_out(&waiting.act).err();
+            self.acts.tell(waiting, nodes, refused);
+        }
     }
 
     /// Whether an act made with [`Self::act`] has not taken effect yet.

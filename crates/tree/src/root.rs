@@ -159,14 +159,7 @@ impl Search {
             result.ray = self.named_direction();
         }
         if let Ending::Stopped(why) = &ending {
-            result.stopped = Some(why.clone());
-            if let Some((bound, proved)) = self.bound_so_far(hand.as_ref()) {
-                result.bound = Some(self.user(bound));
-                result.checked = proved.is_some();
-                result.checked_bound = proved;
-                self.tree.node_mut(NodeId::ROOT).bound = bound;
-                self.ledger.unsolved.push(NodeId::ROOT);
-            }
+            self.tell_stopped(&mut result, hand.as_ref(), why);
         }
         self.root = Some(result);
         self.tree.node_mut(NodeId::ROOT).state = state;
@@ -176,6 +169,41 @@ impl Search {
         self.end(ending);
         self.announce();
         Some(Progress::RootSolved)
+    }
+
+    /// Puts the bound that a root had when it was stopped into what is said of it.
+    fn tell_stopped(&mut self, result: &mut RootResult, hand: Option<&Hand>, why: &str) {
+        result.stopped = Some(why.to_owned());
+        if let Some((bound, proved)) = self.bound_so_far(hand) {
+            result.bound = Some(self.user(bound));
+            result.checked = proved.is_some();
+            result.checked_bound = proved;
+            self.tree.node_mut(NodeId::ROOT).bound = bound;
+            self.ledger.unsolved.push(NodeId::ROOT);
+        }
+    }
+
+    /// Leaves a root whose iterations have run out: it is not solved, so the log has nothing of it, and
+    /// goes on where more are allowed.
+    pub(crate) fn leave_root(&mut self, hand: Hand) -> Option<Progress> {
+        let mut result = self.root_result(Status::Limit, Some(&hand));
+        self.tell_stopped(&mut result, Some(&hand), "iteration limit");
+        self.root = Some(result);
+        self.left_root = Some(hand);
+        self.end(Ending::IterationLimit);
+        Some(Progress::RootSolved)
+    }
+
+    /// Takes up a root that was left; false where none was.
+    pub(crate) fn take_up_root(&mut self) -> bool {
+        let Some(hand) = self.left_root.take() else { return false };
+        self.hand = Some(hand);
+        self.root = None;
+        self.ledger.unsolved.clear();
+        self.tree.node_mut(NodeId::ROOT).bound = f64::NEG_INFINITY;
+        self.state = State::Root;
+        self.go_on_with_root();
+        true
     }
 
     /// The best bound that a root relaxation gave before it was stopped, internal, with what

@@ -19,8 +19,8 @@ pub enum Rule {
     /// this limit goes on where it is raised.
     Nodes(Option<u32>),
     /// The search ends after the node at which so many simplex iterations are made in all, the root
-    /// alone in the middle; `None` is no limit. One that has ended by this limit after its root goes on
-    /// where it is raised.
+    /// alone in the middle; `None` is no limit. One that has ended by this limit goes on where it is
+    /// raised.
     Iterations(Option<u64>),
 }
 

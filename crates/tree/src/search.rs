@@ -41,7 +41,8 @@ use crate::tour::TourSearch;
 pub enum Progress {
     /// There is more to do.
     Working,
-    /// The root relaxation is solved; the search waits for [`Search::run`]. Said once.
+    /// The root relaxation is solved, or has no iterations left; the search waits for [`Search::run`].
+    /// Said once, and once more of a root that went on where more iterations were allowed.
     RootSolved,
     /// The search stands still and can go on with [`Search::run`].
     Paused,
@@ -145,6 +146,8 @@ pub(crate) struct PointInHand {
 pub(crate) struct Hand {
     pub(crate) node: NodeId,
     pub(crate) iterations_before: u64,
+    /// Those of the kernel before the LP that is solved now.
+    pub(crate) iterations_in_lp: u64,
     pub(crate) rows_added: u32,
     pub(crate) rounds: u32,
     /// The internal value of its relaxation's point, where that is a solution.
@@ -177,6 +180,7 @@ impl Hand {
         Self {
             node,
             iterations_before,
+            iterations_in_lp: iterations_before,
             rows_added: 0,
             rounds: 0,
             accepted: None,
@@ -252,6 +256,8 @@ pub struct Search {
     pub(crate) plan: Option<Choice>,
     pub(crate) opening: Opening,
     pub(crate) hand: Option<Hand>,
+    /// A root whose iterations ran out.
+    pub(crate) left_root: Option<Hand>,
     pub(crate) job: Job,
     pub(crate) state: State,
     pub(crate) quota: Option<u32>,
@@ -304,6 +310,7 @@ impl Search {
             plan: None,
             opening: Opening::Tour,
             hand: None,
+            left_root: None,
             job: Job::None,
             state: State::Root,
             quota: None,

@@ -183,7 +183,11 @@ impl Search {
         if left == Some(0) {
             return self.out_of_iterations();
         }
-        self.relaxation.as_mut()?.simplex.start(Limits { iterations: left, cutoff: None });
+        let simplex = &mut self.relaxation.as_mut()?.simplex;
+        simplex.start(Limits { iterations: left, cutoff: None });
+        if let Some(hand) = &mut self.hand {
+            hand.iterations_in_lp = simplex.stats().iterations;
+        }
         self.job = Job::Relax;
         None
     }
@@ -315,7 +319,29 @@ impl Search {
         None
     }
 
+    /// The root has no iterations left, unless an act that waits allows it more.
     fn out_of_iterations(&mut self) -> Option<Progress> {
-        self.root_stopped("iteration limit".to_owned())
+        let hand = self.hand.take()?;
+        self.carry_out_limits();
+        let spent = self.work().iterations;
+        if self.settings.iteration_limit.is_none_or(|limit| limit > spent) {
+            self.hand = Some(hand);
+            return self.go_on_with_root();
+        }
+        self.leave_root(hand)
+    }
+
+    /// Goes on with a root whose iterations had run out.
+    pub(crate) fn go_on_with_root(&mut self) -> Option<Progress> {
+        let spent = self.work().iterations;
+        let before = self.hand.as_ref()?.iterations_in_lp;
+        let left = self.settings.iteration_limit.map(|limit| limit.saturating_sub(spent));
+        let simplex = &mut self.relaxation.as_mut()?.simplex;
+        let of_solve = left.map(|left| left + simplex.stats().iterations - before);
+        if !simplex.resume(of_solve) {
+            return self.solve();
+        }
+        self.job = Job::Relax;
+        None
     }
 }

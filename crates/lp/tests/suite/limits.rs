@@ -3,7 +3,7 @@
 use crate::families::generate;
 use crate::instances::{multi_commodity, single_commodity};
 use crate::shadow::{Shadow, Verdict};
-use hullward_lp::{Limits, Outcome, StopReason};
+use hullward_lp::{Limits, Outcome, Progress, StopReason};
 
 fn optimum(shadow: &Shadow) -> Option<f64> {
     match shadow.verdict(shadow.simplex().solve(Limits::default()), "whole") {
@@ -30,6 +30,33 @@ fn an_iteration_limit_stops_with_a_valid_bound_and_can_be_resumed() {
                 .verdict(simplex.solve(Limits::default()), "resumed")
                 .agrees(Verdict::Optimal(best), 1e-9)
         );
+    }
+}
+
+/// A stopped solve began anew from its basis, and came to its end by another way than one without a
+/// limit.
+#[test]
+fn a_resumed_solve_does_what_one_without_a_limit_does() {
+    for (shadow, exact) in [(multi_commodity(6, 2), true), (single_commodity(9, 4), false)] {
+        let mut whole = shadow.simplex();
+        let expected = whole.solve(Limits::default()).clone();
+        let most = whole.stats().iterations;
+        for limit in 0..most {
+            let mut simplex = shadow.simplex();
+            simplex.solve(Limits { iterations: Some(limit), cutoff: None });
+            assert_eq!(simplex.stats().iterations, limit);
+            assert!(simplex.resume(Some(limit + 1)), "limit {limit}");
+            while simplex.advance(1) == Progress::Working {}
+            if exact {
+                assert!(simplex.resume(Some(limit + 2)) || limit + 1 == most);
+                while simplex.advance(7) == Progress::Working {}
+            }
+            assert!(simplex.resume(None) || simplex.stats().iterations == most);
+            while simplex.advance(100) == Progress::Working {}
+            assert_eq!(simplex.outcome(), Some(&expected), "limit {limit}");
+            assert_eq!(simplex.stats(), whole.stats(), "limit {limit}");
+            assert!(!simplex.resume(None), "it has ended");
+        }
     }
 }
 

@@ -168,7 +168,7 @@ fn a_root_stopped_by_a_limit_keeps_the_bound_it_had() {
     let summary = search.summary();
     assert_eq!(
         (summary.status, summary.bound, summary.nodes),
-        (Status::Limit, root_bound(&search), 1)
+        (Status::Limit, root_bound(&search), 0)
     );
     assert!(!summary.checked);
 }

@@ -315,6 +315,43 @@ fn a_raised_limit_of_iterations_lets_an_ended_search_go_on() {
     }
 }
 
+/// A root that had no iterations left was over for good. It goes on within its LP, to the same numbers,
+/// and a replay allows it more in the same place.
+#[test]
+fn a_root_without_iterations_goes_on_where_more_are_allowed() {
+    let model = round_trip(&Random(3).distances(7), Form::Labels, Sense::Minimise);
+    for settings in [Settings::default(), Settings::production()] {
+        let whole = run(&model, &settings, u64::MAX);
+        // Those of the LP alone, without branchings that were tried.
+        let mut free = Search::new(Rc::clone(&model), Settings::default());
+        while free.advance(u64::MAX) != Progress::RootSolved {}
+        let most = free.root().unwrap().iterations;
+        assert!(most > 10, "{most}");
+        for limit in [0, 1, most / 3, most - 4] {
+            let limited = Settings { iteration_limit: Some(limit), ..settings.clone() };
+            let mut search = Search::new(Rc::clone(&model), limited.clone());
+            finish(&mut search, 1_000);
+            let stopped = search.root().unwrap();
+            assert_eq!(stopped.stopped.as_deref(), Some("iteration limit"), "{limit}");
+            assert_eq!((stopped.iterations, search.summary().nodes), (limit, 0));
+            search.act(Act::Rule(Rule::Iterations(Some(limit))));
+            assert!(search.is_over(), "no more iterations than before are allowed");
+            search.act(Act::Rule(Rule::Iterations(Some(limit + 2))));
+            finish(&mut search, 1_000);
+            assert_eq!(search.root().unwrap().iterations, limit + 2);
+            search.act(Act::Rule(Rule::Iterations(None)));
+            finish(&mut search, 1_000);
+            assert_eq!((search.take_events(), search.summary()), whole, "after {limit}");
+            let mut again = Search::new(Rc::clone(&model), limited);
+            for one in search.take_acted().into_iter().filter(|one| one.refused.is_none()) {
+                again.replay(one.after, one.act);
+            }
+            finish(&mut again, 77);
+            assert_eq!((again.take_events(), again.summary()), whole, "the replay differs");
+        }
+    }
+}
+
 /// Stopped at each plan that is better than all before, a search finds what it finds in one go.
 #[test]
 fn it_stands_still_at_each_better_plan() {

@@ -15,7 +15,8 @@ use crate::cutting::Cutting;
 use crate::decide::CAREFUL;
 use crate::event::{NodeId, NodeState};
 use crate::proving::Proving;
-use crate::search::{Hand, Job, Progress, Search};
+use crate::search::{Hand, Job, Progress, Purpose, Search};
+use crate::solution::{Completed, Verdict};
 use crate::target::signed;
 
 /// What one leaf may cost: ticks, and bits of numbers.
@@ -185,6 +186,7 @@ impl Search {
                 let bound = certifier.bound(self.relaxation.as_ref()?.exact());
                 let hand = self.hand.as_mut()?;
                 (hand.proved, hand.exact) = (bound, certifier.is_exact());
+                self.take_exact_point(&certifier);
                 self.look_for_sliver(&certifier);
                 self.decide()
             }
@@ -212,6 +214,7 @@ impl Search {
                 None
             }
             Proof::Leaf(_, from) => {
+                self.take_exact_point(&certifier);
                 let bound = certifier.bound(self.relaxation.as_ref()?.exact());
                 let reached = certifier.is_refuted() || self.suffices(bound);
                 self.count(reached);
@@ -230,8 +233,34 @@ impl Search {
         hand.exact = certifier.is_exact();
         hand.short = !certifier.is_spent();
         self.hand = Some(hand);
+        self.take_exact_point(certifier);
         self.look_for_sliver(certifier);
         self.decide()
+    }
+
+    /// Takes the exact optimum of a relaxation as the incumbent, where its whole columns are whole and
+    /// the incumbent is worse: the floats of that point may be a plan too, of a value that is worse by
+    /// what its continuous columns were rounded by, and no bound then reaches it.
+    fn take_exact_point(&mut self, certifier: &Certifier) {
+        let Some(relaxation) = self.relaxation.as_ref().filter(|_| certifier.is_exact()) else {
+            return;
+        };
+        let bound = certifier.bound(relaxation.exact());
+        let improves = bound.is_some_and(|b| self.target.improves(&signed(&self.model, b)));
+        let Some(point) = certifier.point().filter(|_| improves && self.incumbent.is_some()) else {
+            return;
+        };
+        if !self.chooser.whole().iter().all(|column| point[column.index()].is_int()) {
+            return;
+        }
+        self.ledger.ticks += relaxation.exact().work();
+        let checked =
+            self.checker.check_completed(self.rounds.separators(), Completed::Exact(point));
+        if let Verdict::Solution(solution) = checked
+            && solution.exact
+        {
+            self.accept(solution, Purpose::Relaxation);
+        }
     }
 
     /// Keeps the whole column of the node in hand with the widest fraction that only exact numbers

@@ -7,6 +7,7 @@ mod by_hand;
 mod conflict;
 mod cuts;
 mod cycles;
+mod decimals;
 mod endings;
 mod enumeration;
 mod eye;

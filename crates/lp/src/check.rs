@@ -43,7 +43,7 @@ impl Core {
             return Err(format!("variable {j} stands at a bound it does not have"));
         }
         self.check_violated()?;
-        self.check_matrix()
+        self.matrix.check()
     }
 
     /// The list of violated positions has each at most once.
@@ -55,22 +55,6 @@ impl Core {
         } else {
             Err("the list of violated positions and its marks disagree".to_owned())
         }
-    }
-
-    /// The copy by column holds the entries of the copy by row, in order.
-    fn check_matrix(&self) -> Result<(), String> {
-        let mut next: Vec<_> = (0..self.columns()).map(|j| self.matrix.column(j)).collect();
-        for i in 0..self.rows() {
-            for (j, value) in self.matrix.row(i) {
-                if next[j as usize].next() != Some((i as u32, value)) {
-                    return Err(format!("row {i} and column {j} of the matrix disagree"));
-                }
-            }
-        }
-        if next.iter_mut().any(|column| column.next().is_some()) {
-            return Err("a column of the matrix has an entry that no row has".to_owned());
-        }
-        Ok(())
     }
 }
 

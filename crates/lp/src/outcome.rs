@@ -36,7 +36,9 @@ pub struct Solution {
     pub x: Vec<f64>,
     /// One value a row: the row at `x`.
     pub activity: Vec<f64>,
-    /// One a row: not negative where the row is held from below, not positive where from above.
+    /// One a row: not negative where the row is held from below, not positive where from above. After
+    /// the last resort they are those of 32 digits, rounded to floats once they had been checked:
+    /// the bound that follows from them can be weaker by that rounding.
     pub duals: Vec<f64>,
     /// One a column: c_j − Σ_i duals_i a_ij; zero where the column is basic.
     pub reduced_costs: Vec<f64>,

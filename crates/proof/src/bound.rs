@@ -120,7 +120,7 @@ pub(crate) fn closed(
         Sum::Open(open) => open,
     };
     let implied = within_model(rows, bounds).then(|| {
-        let sides = Sides { given: bounds, implied: Some(&rows.implied) };
+        let sides = Sides { given: bounds, implied: Some(rows.implied()) };
         match sum(rows, objective, sides, rounding) {
             Sum::Bound(value) => Some(value),
             Sum::Open(_) => None,

@@ -11,13 +11,13 @@ use crate::rows::{Bounds, ExactRows};
 /// only fills sides that are still infinite.
 const PASSES: usize = 6;
 
-/// The model's bounds with infinite sides filled where rows imply a finite one.
+/// The model's bounds with infinite sides filled where one of the first `count` rows implies a
+/// finite one.
 /// `O(passes · non-zeros)` rational operations, none when all bounds are finite.
-pub(crate) fn bounds(rows: &ExactRows) -> Vec<Bounds> {
+pub(crate) fn bounds(rows: &ExactRows, count: usize) -> Vec<Bounds> {
     let mut out = rows.bounds.clone();
     for turn in 0..PASSES {
         let finite = out.iter().all(|(lower, upper)| lower.is_some() && upper.is_some());
-        let count = rows.row_count();
         let back = turn % 2 == 1;
         let order = (0..count).map(|row| if back { count - 1 - row } else { row });
         if finite || !pass(rows, order, &mut out) {

@@ -1,9 +1,10 @@
 //! The rows of a relaxation, scaled to integers once and then read many times.
 
 use std::collections::BTreeMap;
+use std::sync::OnceLock;
 
 use dashu_int::{IBig, UBig, ops::Gcd};
-use model::{Model, Number, Row, RowId, Sense};
+use model::{Model, Number, NumberId, Row, RowId, Sense};
 
 use crate::implied;
 use crate::words::Words;
@@ -32,8 +33,10 @@ pub struct ExactRows {
     pub(crate) cost_scale: UBig,
     /// The bounds of the model.
     pub(crate) bounds: Vec<Bounds>,
-    /// Bounds that follow from the rows of the model, where it gives none.
-    pub(crate) implied: Vec<Bounds>,
+    /// Bounds that follow from the rows of the model, where it gives none; worked out when asked for.
+    implied: OnceLock<Vec<Bounds>>,
+    /// How many rows are the model's own.
+    written: usize,
     pub(crate) rows: Vec<ScaledRow>,
     columns: Vec<u32>,
     /// The coefficients beside `columns`; 0 in a row that is listed in `wide`.
@@ -90,22 +93,56 @@ impl ExactRows {
         let mut rows = Self {
             sense: model.sense(),
             offset: model.offset().clone(),
-            words: Words::new(&costs),
+            words: Words::new(&costs, &cost_scale),
             costs,
             cost_scale,
-            implied: bounds.clone(),
+            implied: OnceLock::new(),
+            written: 0,
             bounds,
             rows: Vec::new(),
             columns: Vec::new(),
             coefficients: Vec::new(),
             wide: BTreeMap::new(),
         };
+        let whole = Whole::of(model);
         let written = (0..model.row_count()).map(RowId::from_index);
         for row in written.filter(|&row| wanted(row)) {
-            rows.add(&model.row(row));
+            if !rows.add_whole(model, row, &whole) {
+                rows.add(&model.row(row));
+            }
         }
-        rows.implied = implied::bounds(&rows);
+        rows.written = rows.rows.len();
         rows
+    }
+
+    /// Adds a written row whose numbers are all whole and fit into words; whether it is one.
+    fn add_whole(&mut self, model: &Model, row: RowId, whole: &Whole) -> bool {
+        let (lower, upper) = model.row_sides(row);
+        let entries = model.row_entries(row);
+        let sides = [lower, upper].into_iter().flatten();
+        if !entries.iter().map(|&(_, a)| a).chain(sides).all(|id| whole.at(id).is_some()) {
+            return false;
+        }
+        let start = self.columns.len();
+        self.columns.extend(entries.iter().map(|(column, _)| column.0));
+        self.coefficients.extend(entries.iter().filter_map(|&(_, a)| whole.at(a)));
+        let side = |id: Option<NumberId>| id.and_then(|id| whole.at(id)).map(IBig::from);
+        let scaled = ScaledRow {
+            start,
+            end: self.columns.len(),
+            scale: UBig::ONE,
+            lower: side(lower),
+            upper: side(upper),
+        };
+        self.words.add(&scaled.scale, (scaled.lower.as_ref(), scaled.upper.as_ref()));
+        self.rows.push(scaled);
+        true
+    }
+
+    /// Bounds that follow from the rows of the model, where it gives none. `O(non-zeros)` rational
+    /// operations the first time that it is asked for.
+    pub(crate) fn implied(&self) -> &[Bounds] {
+        self.implied.get_or_init(|| implied::bounds(self, self.written))
     }
 
     /// Adds a row and gives its place: the index of its multiplier.
@@ -125,7 +162,7 @@ impl ExactRows {
         }
         let lower = row.lower.as_ref().map(|side| scaled(side, &scale));
         let upper = row.upper.as_ref().map(|side| scaled(side, &scale));
-        self.words.add((&self.cost_scale, &scale), (lower.as_ref(), upper.as_ref()));
+        self.words.add(&scale, (lower.as_ref(), upper.as_ref()));
         self.rows.push(ScaledRow { start, end: self.columns.len(), scale, lower, upper });
         place
     }
@@ -175,6 +212,24 @@ impl ExactRows {
         let wide = u32::try_from(row).ok().and_then(|row| self.wide.get(&row));
         let small = Coefficients::Small(&self.coefficients[range.clone()]);
         (&self.columns[range], wide.map_or(small, |values| Coefficients::Wide(values)))
+    }
+}
+
+/// The numbers of a model that are whole and fit into a word.
+struct Whole(Vec<Option<i64>>);
+
+impl Whole {
+    fn of(model: &Model) -> Self {
+        let numbers = model.numbers();
+        let word = |number: &Number| {
+            number.is_int().then(|| i64::try_from(number.numerator()).ok()).flatten()
+        };
+        let ids = (0..numbers.len()).map(NumberId::from_index);
+        Self(ids.map(|id| word(numbers.exact(id))).collect())
+    }
+
+    fn at(&self, id: NumberId) -> Option<i64> {
+        self.0[id.index()]
     }
 }
 

@@ -23,6 +23,8 @@ pub(crate) struct Words {
     /// The scaled costs; `None` where one does not fit.
     pub(crate) costs: Option<Vec<i64>>,
     pub(crate) rows: Vec<RowWords>,
+    /// The scale of the costs.
+    scale: f64,
 }
 
 /// What a row has beside its coefficients.
@@ -51,20 +53,23 @@ impl Side {
 
 impl Words {
     /// The words of the costs, before there are rows.
-    pub(crate) fn new(costs: &[IBig]) -> Self {
+    pub(crate) fn new(costs: &[IBig], scale: &UBig) -> Self {
         let costs = costs.iter().map(|cost| i64::try_from(cost).ok()).collect();
-        Self { costs, rows: Vec::new() }
+        Self { costs, rows: Vec::new(), scale: float(scale) }
     }
 
     /// Takes a row in by its scale and sides.
-    pub(crate) fn add(&mut self, scales: (&UBig, &UBig), sides: (Option<&IBig>, Option<&IBig>)) {
-        let float = |scale: &UBig| nearest_f64(&Number::from(scale.clone()));
+    pub(crate) fn add(&mut self, scale: &UBig, sides: (Option<&IBig>, Option<&IBig>)) {
         self.rows.push(RowWords {
-            ratio: float(scales.0) / float(scales.1),
+            ratio: self.scale / float(scale),
             lower: Side::new(sides.0),
             upper: Side::new(sides.1),
         });
     }
+}
+
+fn float(scale: &UBig) -> f64 {
+    if scale.is_one() { 1.0 } else { nearest_f64(&Number::from(scale.clone())) }
 }
 
 /// The largest multiplier of a scaled row; `None` where one is no number.

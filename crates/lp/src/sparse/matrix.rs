@@ -90,6 +90,23 @@ impl Matrix {
         }
     }
 
+    /// Says where the copy by column does not hold the entries of the copy by row, in order. Work:
+    /// the nonzeros.
+    pub(crate) fn check(&self) -> Result<(), String> {
+        let mut next: Vec<_> = (0..self.columns).map(|j| self.column(j)).collect();
+        for i in 0..self.row_count() {
+            for (j, value) in self.row(i) {
+                if next[j as usize].next() != Some((i as u32, value)) {
+                    return Err(format!("row {i} and column {j} of the matrix disagree"));
+                }
+            }
+        }
+        if next.iter_mut().any(|column| column.next().is_some()) {
+            return Err("a column of the matrix has an entry that no row has".to_owned());
+        }
+        Ok(())
+    }
+
     /// Makes the copy by column from the copy by row: a counting sort.
     fn rebuild_columns(&mut self) {
         let mut start = vec![0usize; self.columns + 1];
@@ -132,5 +149,19 @@ mod tests {
         assert_eq!((a.row_count(), a.nonzeros()), (2, 4));
         assert_eq!(a.column(1).collect::<Vec<_>>(), vec![(1, 5.0)]);
         assert_eq!(a.row(1).collect::<Vec<_>>(), vec![(0, 4.0), (1, 5.0)]);
+    }
+
+    #[test]
+    fn copies_that_disagree_are_named() {
+        let mut sound = Matrix::new(2);
+        let rows: [&[(u32, f64)]; 2] = [&[(0, 1.0), (1, 2.0)], &[(0, 3.0)]];
+        sound.append(rows.iter().copied());
+        assert_eq!(sound.check(), Ok(()));
+        let mut other_value = sound.clone();
+        other_value.column_value[1] = 4.0;
+        assert_eq!(other_value.check().unwrap_err(), "row 1 and column 0 of the matrix disagree");
+        let mut shorter_row = sound;
+        shorter_row.row_start[2] -= 1;
+        assert!(shorter_row.check().unwrap_err().contains("an entry that no row has"));
     }
 }

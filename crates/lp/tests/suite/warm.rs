@@ -231,3 +231,46 @@ fn loading_the_basis_that_is_current_is_like_any_loading() {
         assert_eq!(counts[0], counts[1]);
     }
 }
+
+/// The outcome of a child of a basis, one column fixed at 0, with the work that it took.
+fn child(simplex: &mut Simplex, basis: &Basis, column: Col) -> (Outcome, u64, u64, u32) {
+    let before = simplex.stats();
+    let bounds = simplex.bounds(column);
+    simplex.load_basis(basis);
+    simplex.set_bounds(column, 0.0, 0.0);
+    let outcome = simplex.solve(Limits::default()).clone();
+    simplex.set_bounds(column, bounds.0, bounds.1);
+    let after = simplex.stats();
+    let made = after.refactors - before.refactors;
+    (outcome, after.iterations - before.iterations, after.ticks - before.ticks, made)
+}
+
+/// Bases are visited as a search visits them, some again soon and some late, and a row comes in
+/// between; all that follows is as in a solver that was never there.
+#[test]
+fn a_basis_met_again_is_like_one_never_seen() {
+    for mut lp in [single_commodity(6, 3), facilities(6, 9, false, 2), packing(9, 5, 4)] {
+        let mut used = lp.simplex();
+        used.solve(Limits::default());
+        let mut bases = vec![used.basis()];
+        let mut random = Random::new(11);
+        for visit in 0..80 {
+            let last = bases.len() as i64 - 1;
+            let at = if visit % 3 == 0 {
+                random.integer(0, last)
+            } else {
+                random.integer(last / 2, last)
+            };
+            let column = Col(random.integer(0, lp.cost.len() as i64 - 1) as u32);
+            let mut fresh = lp.simplex();
+            let ends =
+                [&mut used, &mut fresh].map(|simplex| child(simplex, &bases[at as usize], column));
+            assert_eq!(ends[0], ends[1], "visit {visit}");
+            bases.push(used.basis());
+            if visit == 40 {
+                lp.row(vec![(0, 1.0), (3, 1.0)], -INFINITY, 1.0);
+                used.add_rows(&[new_row(&lp.rows[lp.rows.len() - 1])]).unwrap();
+            }
+        }
+    }
+}

@@ -10,7 +10,7 @@ use record::results::RivalResult;
 use record::scenario::{Scenario, letter};
 use record::study::{Line, Report};
 use report::csv::csv;
-use report::decision::{self, Evidence};
+use report::decision::{self, Evidence, Interval};
 use report::study::over_instances;
 
 use crate::ending::Ending;
@@ -103,15 +103,31 @@ fn object(evidence: &Evidence<'_>) -> String {
         evidence.studies.iter().map(|(instance, report)| report.line(instance)).collect();
     let record: serde_json::Value =
         serde_json::from_str(&decision::json(evidence)).unwrap_or_default();
+    let intervals: Vec<serde_json::Value> =
+        decision::intervals(evidence).iter().map(|one| interval(one, evidence.unit)).collect();
     let object = serde_json::json!({
         "hullward_record": 1,
         "engine": evidence.engine,
+        "intervals": intervals,
         "scenario": file::print(evidence.scenario),
         "results": evidence.results,
         "studies": studies,
         "record": record,
     });
     format!("{object:#}\n")
+}
+
+/// Between which values the best possible plan of an instance lies: `bound` is proved in exact arithmetic,
+/// `plan` is the best that was found, both in `unit`.
+fn interval(one: &Interval, unit: &str) -> serde_json::Value {
+    serde_json::json!({
+        "instance": one.instance,
+        "sense": if one.maximise { "maximise" } else { "minimise" },
+        "bound": one.bound,
+        "plan": one.plan,
+        "unit": unit,
+        "closed": one.is_closed(),
+    })
 }
 
 /// What is understood of the first instance.

@@ -1,8 +1,9 @@
 //! The decision record: what was asked, what was found, and what would reopen it, on paper. It is
 //! put together once as blocks and set as HTML or Markdown; every sentence comes from figures that
-//! stand beside it.
+//! stand in it, and cites the piece of evidence where they stand by its number.
 
 mod choice;
+mod cited;
 mod html;
 mod json;
 mod markdown;
@@ -10,6 +11,8 @@ mod mathml;
 mod reopen;
 mod svg;
 
+pub use choice::{Interval, intervals};
+use cited::{Cited, Marks, plain};
 pub(crate) use html::escaped;
 pub use mathml::mathml;
 use record::results::{Proof, RivalResult, Status};
@@ -22,6 +25,10 @@ use crate::study::{Figure, Section, Table, and, overview, sections};
 /// Stands at the end of every record.
 const CAUTION: &str = "A plan that comes out of a model is a decision aid; driving, working-time, \
 energy and safety rules of the place, and the people licensed to apply them, come first.";
+
+/// Stands before the findings.
+const TRACED: &str =
+    "A number in brackets names the piece of evidence below that a sentence is made of.";
 
 /// What a record is made of.
 #[derive(Debug, Clone, Copy)]
@@ -52,10 +59,13 @@ enum Block {
     Title(String),
     Heading(String),
     Minor(String),
+    /// The heading of a piece of evidence, with the number that sentences cite it by.
+    Part(usize, String),
     Text(String),
     /// Markdown of somebody's hand.
     Notes(String),
-    List(Vec<String>),
+    /// Sentences, each with the numbers of the evidence that it is made of.
+    List(Vec<Cited>),
     Table(Table),
     /// A drawing, as SVG of our own.
     Figure(String),
@@ -108,30 +118,33 @@ fn drawings(evidence: &Evidence<'_>) -> Vec<(String, Figure)> {
 }
 
 fn blocks(evidence: &Evidence<'_>) -> Vec<Block> {
+    let marks = Marks::of(evidence);
     let mut out = question(evidence);
     out.push(Block::Heading("What was found".to_owned()));
-    out.push(Block::List(findings(evidence)));
+    out.push(Block::Text(TRACED.to_owned()));
+    out.push(Block::List(findings(evidence, &marks)));
     out.push(Block::Heading("The rivals side by side".to_owned()));
-    for instance in instances(evidence) {
-        if !instance.is_empty() {
-            out.push(Block::Minor(instance.clone()));
-        }
-        out.push(Block::Table(results(evidence, &instance)));
+    for (instance, mark) in instances(evidence).iter().zip(&marks.results) {
+        let on = if instance.is_empty() { "Results" } else { instance };
+        out.push(Block::Part(*mark, on.to_owned()));
+        out.push(Block::Table(results(evidence, instance)));
     }
     if !evidence.studies.is_empty() {
         out.push(Block::Heading("Evidence".to_owned()));
-        out.extend(orders(evidence));
-        for (instance, report) in evidence.studies {
-            out.extend(sections(report).into_iter().flat_map(|found| section(instance, found)));
+        let found = orders(evidence).into_iter().zip(&marks.orders);
+        out.extend(found.flat_map(|((instance, found), mark)| section(&instance, *mark, found)));
+        for ((instance, report), own) in evidence.studies.iter().zip(&marks.studies) {
+            let found = sections(report).into_iter().zip(own);
+            out.extend(found.flat_map(|(found, mark)| section(instance, *mark, found)));
         }
     }
-    let choice = choice::choice(evidence);
+    let choice = choice::choice(evidence, &marks);
     if !choice.is_empty() {
         out.push(Block::Heading("The choice".to_owned()));
         out.push(Block::List(choice));
     }
     out.push(Block::Heading("What reopens this decision".to_owned()));
-    out.push(Block::List(reopen::conditions(evidence)));
+    out.push(Block::List(reopen::conditions(evidence, &marks)));
     out.extend(statements(evidence));
     out.extend(reproduce(evidence));
     out.push(Block::Text(CAUTION.to_owned()));
@@ -148,11 +161,11 @@ fn question(evidence: &Evidence<'_>) -> Vec<Block> {
     }
     if !evidence.facts.is_empty() {
         out.push(Block::Heading("The instance".to_owned()));
-        out.push(Block::List(evidence.facts.to_vec()));
+        out.push(Block::List(plain(evidence.facts.iter().cloned())));
     }
     out.push(Block::Heading("The rivals".to_owned()));
     let rivals = evidence.scenario.rivals.iter().enumerate();
-    out.push(Block::List(rivals.map(|(place, rival)| named(evidence, place, rival)).collect()));
+    out.push(Block::List(plain(rivals.map(|(place, rival)| named(evidence, place, rival)))));
     out
 }
 
@@ -173,16 +186,21 @@ fn named(evidence: &Evidence<'_>, place: usize, rival: &Rival) -> String {
 }
 
 /// The sentences of the studies, and for each rival what its search came to.
-fn findings(evidence: &Evidence<'_>) -> Vec<String> {
-    let mut out: Vec<String> = evidence.results.iter().filter_map(outcome).collect();
-    out.extend(instances(evidence).iter().filter_map(|one| choice::interval(evidence, one)));
-    out.extend(best_known(evidence));
-    for (_, report) in evidence.studies {
+fn findings(evidence: &Evidence<'_>, marks: &Marks) -> Vec<Cited> {
+    let of_results = |result: &RivalResult| Some((outcome(result)?, marks.on(&result.instance)));
+    let mut out: Vec<Cited> = evidence.results.iter().filter_map(of_results).collect();
+    for interval in intervals(evidence) {
+        out.push((interval.words(evidence.unit), marks.on(&interval.instance)));
+    }
+    out.extend(best_known(evidence).map(|sentence| (sentence, marks.results.clone())));
+    for ((_, report), own) in evidence.studies.iter().zip(&marks.studies) {
         let verdicts =
             matches!(report, Report::Equivalence(_) | Report::Order(_) | Report::Growth(_));
         if verdicts {
-            let found = sections(report).into_iter();
-            out.extend(found.flat_map(|section| section.verdict.into_iter().take(1)));
+            for (section, mark) in sections(report).into_iter().zip(own) {
+                let first = section.verdict.into_iter().take(1);
+                out.extend(first.map(|sentence| (sentence, vec![*mark])));
+            }
         }
     }
     out
@@ -279,7 +297,7 @@ fn row(result: &RivalResult) -> Vec<String> {
 }
 
 /// The order of all rivals, instance by instance.
-fn orders(evidence: &Evidence<'_>) -> Vec<Block> {
+fn orders(evidence: &Evidence<'_>) -> Vec<(String, Section)> {
     let mut instances: Vec<&String> =
         evidence.studies.iter().map(|(instance, _)| instance).collect();
     instances.dedup();
@@ -287,14 +305,14 @@ fn orders(evidence: &Evidence<'_>) -> Vec<Block> {
     for instance in instances {
         let own = evidence.studies.iter().filter(|(of, _)| of == instance);
         let own: Vec<&Report> = own.map(|(_, report)| report).collect();
-        out.extend(overview(&own).into_iter().flat_map(|found| section(instance, found)));
+        out.extend(overview(&own).map(|found| (instance.clone(), found)));
     }
     out
 }
 
-fn section(instance: &str, section: Section) -> Vec<Block> {
+fn section(instance: &str, mark: usize, section: Section) -> Vec<Block> {
     let on = if instance.is_empty() { String::new() } else { format!(" ({instance})") };
-    let mut out = vec![Block::Minor(format!("{}{on}", section.heading))];
+    let mut out = vec![Block::Part(mark, format!("{}{on}", section.heading))];
     out.extend(section.verdict.into_iter().map(Block::Text));
     out.extend(section.figure.map(|figure| Block::Figure(figure.svg())));
     out.extend(section.table.map(Block::Table));

@@ -11,6 +11,7 @@ use record::study::{EquivalenceKind, EquivalenceLevel, OrderLevel, Relation};
 mod infeasibility;
 mod objective;
 mod rows;
+mod statistics;
 mod symmetry;
 mod variability;
 

@@ -115,6 +115,15 @@ fn the_record_is_an_object_with_the_figures_that_it_is_made_of() {
     assert_eq!(pieces[0]["title"], "Secret shops");
     let table = pieces.iter().find_map(|piece| piece["table"].as_object()).expect("a table");
     assert_eq!(table["rows"].as_array().map(Vec::len), Some(2));
+    // The interval that the record tells in words, as figures: the optimum of these two shops.
+    let interval = &object["intervals"][0];
+    assert_eq!((&interval["sense"], &interval["closed"]), (&"minimise".into(), &true.into()));
+    let optimum = object["results"][0]["search"]["incumbent"].as_f64().expect("an optimum");
+    assert_eq!(
+        (interval["bound"].as_f64(), interval["plan"].as_f64()),
+        (Some(optimum), Some(optimum))
+    );
+    assert!(interval["unit"].is_string(), "{interval}");
     // The scenario in it is run to the same results.
     assert_eq!(bounds(object["scenario"].as_str().expect("text")), bounds(SCENARIO));
 }

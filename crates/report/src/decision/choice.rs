@@ -4,7 +4,8 @@
 use record::results::{Proof, RivalResult, Status};
 use record::study::{GrowthPair, Order, OrderLevel, Relation, Report};
 
-use super::Evidence;
+use super::cited::{Cited, Marks};
+use super::{Evidence, instances};
 use crate::number::{count, of, short, ten_digits};
 
 /// Notes that record a choice hold this word.
@@ -19,7 +20,7 @@ struct Standing<'r> {
 }
 
 /// The sentences; none where fewer than two rivals were searched.
-pub(super) fn choice(evidence: &Evidence<'_>) -> Vec<String> {
+pub(super) fn choice(evidence: &Evidence<'_>, marks: &Marks) -> Vec<Cited> {
     let mut standings = standings(evidence.results);
     if standings.len() < 2 {
         return Vec::new();
@@ -32,17 +33,24 @@ pub(super) fn choice(evidence: &Evidence<'_>) -> Vec<String> {
         }
     }
     let ahead = standings.remove(first);
-    let mut out = vec![decided(evidence)];
-    if let Some(pair) = apart(evidence.studies) {
-        out.push(format!(
-            "{pair} are not the same problem: what one gains over the other says nothing."
-        ));
+    let mut out = vec![(decided(evidence), Vec::new())];
+    if let Some((place, pair)) = apart(evidence.studies) {
+        let sentence =
+            format!("{pair} are not the same problem: what one gains over the other says nothing.");
+        out.push((sentence, marks.study(place).into_iter().collect()));
         return out;
     }
     if ahead.solved == 0 {
-        out.push("No rival was solved within the limits: which is ahead is not known.".to_owned());
+        let sentence = "No rival was solved within the limits: which is ahead is not known.";
+        out.push((sentence.to_owned(), marks.results.clone()));
         return out;
     }
+    out.push((is_ahead(&ahead), marks.results.clone()));
+    out.extend(standings.iter().map(|other| why_not((evidence, marks), &ahead, other)));
+    out
+}
+
+fn is_ahead(ahead: &Standing<'_>) -> String {
     let solved = match (ahead.solved, ahead.instances) {
         (1, 1) => "it was solved".to_owned(),
         (solved, all) => {
@@ -50,13 +58,11 @@ pub(super) fn choice(evidence: &Evidence<'_>) -> Vec<String> {
             format!("{} of {all} were solved", count(u64::from(solved)))
         }
     };
-    out.push(format!(
+    format!(
         "On these figures {} is ahead: {solved} with {} non-zeros touched.",
         ahead.letter,
         short(ahead.work)
-    ));
-    out.extend(standings.iter().map(|other| why_not(evidence, &ahead, other)));
-    out
+    )
 }
 
 fn decided(evidence: &Evidence<'_>) -> String {
@@ -92,19 +98,23 @@ fn standings(results: &[RivalResult]) -> Vec<Standing<'_>> {
     out
 }
 
-/// A pair that the court tells apart.
-fn apart(studies: &[(String, Report)]) -> Option<String> {
-    studies.iter().find_map(|(_, report)| match report {
+/// A pair that the court tells apart, and the place of the study that does.
+fn apart(studies: &[(String, Report)]) -> Option<(usize, String)> {
+    studies.iter().enumerate().find_map(|(place, (_, report))| match report {
         Report::Equivalence(verdict) if verdict.equivalent == Some(false) => {
-            Some(verdict.rivals.join(" and "))
+            Some((place, verdict.rivals.join(" and ")))
         }
         _ => None,
     })
 }
 
 /// Why a rival is not the one that is ahead.
-fn why_not(evidence: &Evidence<'_>, ahead: &Standing<'_>, other: &Standing<'_>) -> String {
-    let mut why = Vec::new();
+fn why_not(
+    (evidence, marks): (&Evidence<'_>, &Marks),
+    ahead: &Standing<'_>,
+    other: &Standing<'_>,
+) -> Cited {
+    let (mut why, mut cited) = (Vec::new(), marks.results.clone());
     if other.solved < ahead.solved {
         let instances = of(u64::from(other.instances), "instance");
         why.push(format!("{} of {instances} solved", count(u64::from(other.solved))));
@@ -114,7 +124,8 @@ fn why_not(evidence: &Evidence<'_>, ahead: &Standing<'_>, other: &Standing<'_>) 
         why.push(format!("{least}{} times the work", short(other.work / ahead.work)));
     }
     let pair = [ahead.letter, other.letter];
-    for (_, report) in evidence.studies {
+    for (place, (_, report)) in evidence.studies.iter().enumerate() {
+        let before = why.len();
         match report {
             Report::Order(order) => why.extend(weaker(order, pair)),
             Report::Growth(growth) => {
@@ -122,9 +133,12 @@ fn why_not(evidence: &Evidence<'_>, ahead: &Standing<'_>, other: &Standing<'_>) 
             }
             _ => {}
         }
+        if why.len() > before {
+            cited.extend(marks.study(place));
+        }
     }
     why.dedup();
-    format!("{} is behind it: {}.", other.letter, why.join("; "))
+    (format!("{} is behind it: {}.", other.letter, why.join("; ")), cited)
 }
 
 /// How the relaxation of the other stands to that of the one ahead.
@@ -160,12 +174,29 @@ fn grown(pair: &GrowthPair, [ahead, other]: [&str; 2]) -> Option<String> {
         .then(|| format!("though not to be told from it over {instances} of the growth study"))
 }
 
-/// Between which values the best possible plan of an instance lies, as far as exact arithmetic proves it,
-/// in the unit of the data; `None` where nothing is proved or rivals are not the same problem.
-pub(super) fn interval(evidence: &Evidence<'_>, instance: &str) -> Option<String> {
+/// Between which values the best possible plan of an instance lies, in the unit of the data.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Interval {
+    /// The instance; empty where there is one.
+    pub instance: String,
+    /// Whether larger is better.
+    pub maximise: bool,
+    /// The strongest bound that exact arithmetic proved.
+    pub bound: f64,
+    /// The best plan that was found; none where there is none.
+    pub plan: Option<f64>,
+}
+
+/// The interval of each instance; none where nothing is proved or rivals are not the same problem.
+#[must_use]
+pub fn intervals(evidence: &Evidence<'_>) -> Vec<Interval> {
     if apart(evidence.studies).is_some() {
-        return None;
+        return Vec::new();
     }
+    instances(evidence).iter().filter_map(|instance| interval(evidence, instance)).collect()
+}
+
+fn interval(evidence: &Evidence<'_>, instance: &str) -> Option<Interval> {
     let own = || evidence.results.iter().filter(|one| one.instance == instance);
     let maximise = own().next()?.maximise;
     let sign = if maximise { -1.0 } else { 1.0 };
@@ -176,27 +207,40 @@ pub(super) fn interval(evidence: &Evidence<'_>, instance: &str) -> Option<String
         })
     };
     let bound = best(&mut own().filter_map(proved), true)?;
-    let plans =
+    let mut plans =
         own().filter(|one| !one.relaxation).filter_map(|one| one.search.as_ref()?.incumbent);
-    let unit = if evidence.unit.is_empty() { String::new() } else { format!(" {}", evidence.unit) };
-    let on = if instance.is_empty() { String::new() } else { format!(" on {instance}") };
-    let (verb, side) = if maximise { ("brings", "at most") } else { ("costs", "at least") };
-    let Some(plan) = best(&mut plans.into_iter(), false) else {
-        let bound = ten_digits(bound);
-        return Some(format!("The best possible plan{on} {verb} {side} {bound}{unit}: proved."));
-    };
-    let close = (plan - bound).abs() <= 1e-9 * (1.0 + plan.abs());
-    let (low, high) = if bound < plan { (bound, plan) } else { (plan, bound) };
-    Some(if close {
-        format!("The best possible plan{on} {verb} {}{unit}: proved.", ten_digits(plan))
-    } else {
+    let plan = best(&mut plans, false);
+    Some(Interval { instance: instance.to_owned(), maximise, bound, plan })
+}
+
+impl Interval {
+    /// Whether bound and plan meet.
+    #[must_use]
+    pub fn is_closed(&self) -> bool {
+        self.plan.is_some_and(|plan| (plan - self.bound).abs() <= 1e-9 * (1.0 + plan.abs()))
+    }
+
+    /// The interval in a sentence.
+    pub(super) fn words(&self, unit: &str) -> String {
+        let unit = if unit.is_empty() { String::new() } else { format!(" {unit}") };
+        let on =
+            if self.instance.is_empty() { String::new() } else { format!(" on {}", self.instance) };
+        let (verb, side) =
+            if self.maximise { ("brings", "at most") } else { ("costs", "at least") };
+        let bound = ten_digits(self.bound);
+        let Some(plan) = self.plan else {
+            return format!("The best possible plan{on} {verb} {side} {bound}{unit}: proved.");
+        };
+        let found = ten_digits(plan);
+        if self.is_closed() {
+            return format!("The best possible plan{on} {verb} {found}{unit}: proved.");
+        }
+        let (low, high) = if self.bound < plan { (&bound, &found) } else { (&found, &bound) };
         format!(
-            "The best possible plan{on} {verb} between {} and {}{unit}; the best one found {verb} {}{unit}.",
-            ten_digits(low),
-            ten_digits(high),
-            ten_digits(plan)
+            "The best possible plan{on} {verb} between {low} and {high}{unit}; the best one found {verb} \
+             {found}{unit}."
         )
-    })
+    }
 }
 
 /// The bound of a rival that exact arithmetic proved: of its tree, else of its relaxation.

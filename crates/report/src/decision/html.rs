@@ -3,6 +3,7 @@
 use std::fmt::Write;
 
 use super::Block;
+use super::cited::Cited;
 use crate::notes::{Hand, Piece, Run, pieces};
 use crate::study::Table;
 
@@ -17,6 +18,7 @@ p,ul,ol{margin:4px 0 8px}ul,ol{padding-left:20px}p{white-space:pre-line}\
 .scroll{overflow-x:auto}\
 table{border-collapse:collapse;margin:8px 0;font:13px/20px system-ui,sans-serif;font-variant-numeric:tabular-nums}\
 th,td{padding:3px 10px 3px 0;border-bottom:1px solid #8884;text-align:right;font-weight:400;vertical-align:top}\
+h3 small{font-weight:400;opacity:.7}\
 th.w,td.w{text-align:left}thead th{opacity:.7}\
 .set td{text-align:left;padding:2px 8px 2px 0;border:0;font-size:14px}.set td.l{text-align:right;padding-right:3px}\
 pre{overflow-x:auto;margin:8px 0;padding:8px;border:1px solid #8884;font:13px/18px ui-monospace,monospace;white-space:pre-wrap;overflow-wrap:anywhere}\
@@ -48,6 +50,11 @@ fn write_block(block: &Block, out: &mut String) {
         Block::Title(text) => out.push_str(&tag("h1", text)),
         Block::Heading(text) => out.push_str(&tag("h2", text)),
         Block::Minor(text) => out.push_str(&tag("h3", text)),
+        Block::Part(mark, text) => {
+            let text = escaped(text);
+            // Writing to a string cannot fail.
+            let _ = writeln!(out, "<h3 id=\"e{mark}\">{text} <small>[{mark}]</small></h3>");
+        }
         Block::Text(text) => out.push_str(&tag("p", text)),
         Block::Notes(text) => pieces(text).iter().for_each(|piece| write_piece(piece, out)),
         Block::Code(text) => out.push_str(&tag("pre", text)),
@@ -56,7 +63,7 @@ fn write_block(block: &Block, out: &mut String) {
             out.push_str(&tag("pre", text));
         }
         Block::List(items) => {
-            let items: String = items.iter().map(|item| tag("li", item)).collect();
+            let items: String = items.iter().map(cited).collect();
             // Writing to a string cannot fail.
             let _ = write!(out, "<ul>\n{items}</ul>\n");
         }
@@ -66,6 +73,14 @@ fn write_block(block: &Block, out: &mut String) {
         }
         Block::Table(table) => write_table(table, out),
     }
+}
+
+/// A sentence with links to the evidence that it cites.
+fn cited((sentence, marks): &Cited) -> String {
+    let link = |mark: &usize| format!("<a href=\"#e{mark}\">{mark}</a>");
+    let links: Vec<String> = marks.iter().map(link).collect();
+    let links = if links.is_empty() { String::new() } else { format!(" [{}]", links.join(", ")) };
+    format!("<li>{}{links}</li>\n", escaped(sentence))
 }
 
 fn write_piece(piece: &Piece, out: &mut String) {

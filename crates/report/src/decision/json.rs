@@ -1,6 +1,7 @@
 //! The record as JSON, piece by piece.
 
 use super::Block;
+use super::cited::with_marks;
 use crate::certificate::{list, text};
 use crate::study::Table;
 
@@ -13,9 +14,10 @@ fn of_block(block: &Block) -> String {
         Block::Title(words) => ("title", text(words)),
         Block::Heading(words) => ("heading", text(words)),
         Block::Minor(words) => ("subheading", text(words)),
+        Block::Part(mark, words) => ("subheading", text(&format!("{words} [{mark}]"))),
         Block::Text(words) => ("text", text(words)),
         Block::Notes(words) => ("notes", text(words)),
-        Block::List(items) => ("list", words(items)),
+        Block::List(items) => ("list", list(items, |item| text(&with_marks(item)))),
         Block::Table(table) => ("table", of_table(table)),
         Block::Figure(svg) => ("figure", text(svg)),
         Block::Code(words) | Block::Formulation(_, words) => ("code", text(words)),

@@ -3,6 +3,7 @@
 use std::fmt::Write;
 
 use super::Block;
+use super::cited::with_marks;
 use crate::study::Table;
 
 pub(super) fn document(blocks: &[Block]) -> String {
@@ -13,10 +14,11 @@ pub(super) fn document(blocks: &[Block]) -> String {
             Block::Title(text) => writeln!(out, "# {}\n", line(text)),
             Block::Heading(text) => writeln!(out, "## {}\n", line(text)),
             Block::Minor(text) => writeln!(out, "### {}\n", line(text)),
+            Block::Part(mark, text) => writeln!(out, "### {} [{mark}]\n", line(text)),
             Block::Text(text) | Block::Notes(text) => writeln!(out, "{text}\n"),
             Block::List(items) => {
                 let items: Vec<String> =
-                    items.iter().map(|item| format!("- {}", line(item))).collect();
+                    items.iter().map(|item| format!("- {}", line(&with_marks(item)))).collect();
                 writeln!(out, "{}\n", items.join("\n"))
             }
             Block::Code(text) | Block::Formulation(_, text) => {

@@ -4,35 +4,41 @@ use record::results::Status;
 use record::study::{EquivalenceKind, EquivalenceLevel, OrderLevel, Report};
 
 use super::Evidence;
+use super::cited::{Cited, Marks};
 use crate::number::{count, short};
 
 /// The conditions, in the order of the evidence.
-pub(super) fn conditions(evidence: &Evidence<'_>) -> Vec<String> {
-    let mut out = Vec::new();
-    for (_, report) in evidence.studies {
-        of_study(report, &mut out);
+pub(super) fn conditions(evidence: &Evidence<'_>, marks: &Marks) -> Vec<Cited> {
+    let mut out: Vec<Cited> = Vec::new();
+    for (place, (_, report)) in evidence.studies.iter().enumerate() {
+        let mut own = Vec::new();
+        of_study(report, &mut own);
+        let cited: Vec<usize> = marks.study(place).into_iter().collect();
+        out.extend(own.into_iter().map(|condition| (condition, cited.clone())));
     }
     let stopped = evidence.results.iter().filter(|result| result.status == Status::Limit);
     let stopped: Vec<&str> = stopped.map(|result| result.rival.as_str()).collect();
     if !stopped.is_empty() {
-        out.push(format!(
+        let condition = format!(
             "a longer run: {} stopped by a limit, so their node counts are lower bounds",
             stopped.join(", ")
-        ));
+        );
+        out.push((condition, marks.results.clone()));
     }
+    let mut beside = |condition: &str| out.push((condition.to_owned(), Vec::new()));
     let has = |kind: &str| evidence.studies.iter().any(|(_, report)| report.kind() == kind);
     if !has("equivalence") {
-        out.push("doubt that the rivals are the same problem: that was not studied".to_owned());
+        beside("doubt that the rivals are the same problem: that was not studied");
     }
     if !has("growth") {
-        out.push("an instance of another size: growth was not studied".to_owned());
+        beside("an instance of another size: growth was not studied");
     }
     let data = if evidence.scenario.instance.is_some() {
         "another objective, other data or another choice of depot or root"
     } else {
         "another objective, or other data"
     };
-    out.push(data.to_owned());
+    beside(data);
     out.dedup();
     out
 }

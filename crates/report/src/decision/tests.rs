@@ -92,6 +92,53 @@ fn every_figure_of_the_findings_stands_in_the_record() {
     }
 }
 
+/// The numbers in brackets of a line.
+fn cited(line: &str) -> Vec<usize> {
+    let marks = line.rsplit_once('[').and_then(|(_, rest)| rest.trim_end().strip_suffix(']'));
+    let marks = marks.map_or_else(Vec::new, |marks| marks.split(", ").collect());
+    marks.iter().filter_map(|mark| mark.parse().ok()).collect()
+}
+
+/// Every sentence that is made of figures names the table or drawing that they stand in.
+#[test]
+fn each_finding_is_traced_to_its_evidence() {
+    let text = made(markdown);
+    let heading = |mark: usize| {
+        let of_mark = |line: &&str| line.starts_with("### ") && cited(line) == [mark];
+        text.lines().find(of_mark).unwrap_or_else(|| panic!("no evidence {mark}\n{text}"))
+    };
+    let of_part = |from: &str, to: &str| {
+        let (_, part) = text.split_once(from).unwrap_or_default();
+        part.split(to).next().unwrap_or_default().lines().filter(|line| line.starts_with("- "))
+    };
+    let findings: Vec<&str> = of_part("## What was found", "## ").collect();
+    assert!(findings.len() >= 5, "{text}");
+    for finding in findings {
+        let [mark] = cited(finding)[..] else { panic!("{finding}") };
+        let wanted = match finding {
+            _ if finding.contains("admit the same plans") => "### Are A and B the same problem?",
+            _ if finding.contains('⪰') => "### Which of A and B is stronger?",
+            _ if finding.contains("distinguishable") || finding.contains("neither was solved") => {
+                "### Growth"
+            }
+            _ => "### Results",
+        };
+        assert!(heading(mark).starts_with(wanted), "{finding}: {}", heading(mark));
+    }
+    // Why the other one is behind rests on the results, the order and the growth study.
+    let behind = of_part("## The choice", "## ").find(|line| line.contains("is behind it"));
+    let cites: Vec<&str> = cited(behind.unwrap_or_default()).into_iter().map(heading).collect();
+    let starts = ["### Results", "### Which of A and B is stronger?", "### Growth"];
+    assert!(cites.len() == 3, "{cites:?}");
+    cites.iter().zip(starts).for_each(|(cite, start)| assert!(cite.starts_with(start), "{cite}"));
+    // On paper and on a screen the number leads there.
+    let page = made(html);
+    for mark in 1..=4 {
+        assert_eq!(page.matches(&format!("id=\"e{mark}\"")).count(), 1, "{page}");
+    }
+    assert!(page.contains("[<a href=\"#e1\">1</a>]"), "{page}");
+}
+
 #[test]
 fn what_was_typed_stays_text() {
     let page = made(html);

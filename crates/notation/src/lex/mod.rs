@@ -299,7 +299,7 @@ impl Lexer<'_> {
             "definitions" | "define" if line_start => Some(Kind::Definitions),
             "minimise" | "minimize" | "maximise" | "maximize" => table::word(&lower),
             "min" | "max" if line_start => table::word(&lower),
-            _ => table::word(word),
+            _ => table::word(word).or_else(|| self.condition_word(word)),
         };
         match kind {
             Some(kind) => self.take(kind, length),

@@ -1,6 +1,7 @@
 //! What papers write in words: parts, quantifiers, domains.
 
-use super::token::Kind;
+use super::Lexer;
+use super::token::{Gap, Kind};
 
 /// The token of a phrase in `\text{}` or of one that stands alone; `None` where it is only text.
 pub(super) fn phrase(inner: &str) -> Option<Kind> {
@@ -45,6 +46,28 @@ pub(super) fn phrase(inner: &str) -> Option<Kind> {
 
 fn is_or_begins(text: &str, words: &str) -> bool {
     text.strip_prefix(words).is_some_and(|rest| rest.is_empty() || rest.starts_with(' '))
+}
+
+/// How far back a quantifier is sought.
+const REACH: usize = 60;
+
+impl Lexer<'_> {
+    /// `for all j, k ∈ J with j < k`: behind a quantifier on the same line such a word opens the
+    /// condition.
+    pub(super) fn condition_word(&self, word: &str) -> Option<Kind> {
+        if !["with", "where", "when", "if"].contains(&word) || self.gap.has(Gap::NEWLINE) {
+            return None;
+        }
+        for token in self.tokens.iter().rev().take(REACH) {
+            match token.kind {
+                Kind::ForAll => return Some(Kind::SuchThat),
+                Kind::Break => return None,
+                _ if token.gap.has(Gap::NEWLINE) => return None,
+                _ => {}
+            }
+        }
+        None
+    }
 }
 
 /// Whether a phrase asks that what it quantifies be different.

@@ -268,7 +268,9 @@ impl Lexer<'_> {
         self.at = end;
         let big = ["\\sum", "\\prod", "\\min", "\\max"];
         let related = lex(first, 0).iter().any(|t| t.kind.is_relation());
-        if name == "underset" && big.contains(&base.trim()) && related {
+        let sense =
+            lex(base, 0).first().is_some_and(|t| matches!(t.kind, Kind::Minimise | Kind::Maximise));
+        if name == "underset" && (sense || big.contains(&base.trim())) && related {
             self.stand_for(&format!("{base}_{{{first}}}"), start, end);
         } else if name == "stackrel" && related && base.trim().len() > 1 {
             self.stand_for(&format!("{first}, {base}"), start, end);

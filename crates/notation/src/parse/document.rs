@@ -127,6 +127,7 @@ impl Parser<'_> {
             }
             debug_assert!(self.at > before, "the parser must move on");
         }
+        self.read_domains_below(&mut tree);
         tree
     }
 
@@ -166,6 +167,11 @@ impl Parser<'_> {
             let before = &self.tokens[self.at - 1];
             before.kind == T::Break && !before.text.is_empty()
         };
+        if matches!(part, Part::None | Part::Data | Part::Definitions)
+            && let Some(at) = self.asked_objective()
+        {
+            return Some(at);
+        }
         let open = part == Part::None || matches!(part, Part::Data | Part::Definitions) && display;
         if open {
             return self.named_objective();

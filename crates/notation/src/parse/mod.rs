@@ -68,6 +68,7 @@ pub fn parse(text: &str) -> Parse {
         declared: BTreeSet::new(),
         cases: Vec::new(),
         passing: Vec::new(),
+        below: None,
         diagnostics: Vec::new(),
     };
     let mut tree = parser.document();
@@ -126,6 +127,8 @@ struct Parser<'t> {
     cases: Vec<cases::Case>,
     /// Sets that a quantifier defines in passing: `i ∈ M = {1,…,m}`.
     passing: Vec<Line>,
+    /// The tokens below the objective's word, where they say domains: `\\min_{x ∈ {0,1}^n}`.
+    below: Option<(usize, usize)>,
     diagnostics: Vec<Diagnostic>,
 }
 

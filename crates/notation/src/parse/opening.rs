@@ -1,10 +1,17 @@
 //! What may stand before the objective: `Z^* = \\min`, `(P) max`, `\\min_{x,y}`, `max{… : …}`.
 
-use super::Parser;
-use crate::lex::token::{Gap, Kind as T};
+use std::collections::BTreeSet;
+
+use super::called::is_domain;
+use super::{Parser, Surroundings};
+use crate::lex::token::{Gap, Kind as T, Token};
+use crate::syntax::{Expression, Formulation, Kind, Line};
 
 /// How far away the bracket that closes is sought.
 const REACH: usize = 4_000;
+
+/// How many tokens may stand between `Find` and `minimise`.
+const SENTENCE: usize = 40;
 
 impl Parser<'_> {
     /// The place of the word that opens the objective, where only its name stands before it on
@@ -55,8 +62,64 @@ impl Parser<'_> {
             return;
         }
         if let Some(close) = self.closing(self.at) {
+            if self.says_domains(self.at + 1, close) {
+                self.below = Some((self.at + 1, close));
+            }
             self.at = close + 1;
         }
+    }
+
+    /// Whether tokens say `x ∈ {0,1}^n` or `y ≥ 0`, and not from which set `X` the plan is.
+    fn says_domains(&self, from: usize, to: usize) -> bool {
+        let inner = self.tokens.get(from..to).unwrap_or_default();
+        let numbers = |kind: T| {
+            let bracket = matches!(kind, T::LeftBrace | T::LeftBracket);
+            bracket || matches!(kind, T::Reals | T::Integers | T::Naturals | T::Binaries)
+        };
+        let domain = |pair: &[Token]| match pair[0].kind {
+            T::In => numbers(pair[1].kind),
+            T::AtLeast | T::AtMost => pair[1].kind == T::Number,
+            _ => false,
+        };
+        let variable =
+            inner.first().is_some_and(|t| t.kind == T::Word && !self.declared.contains(&t.text));
+        variable && inner.windows(2).any(domain)
+    }
+
+    /// Reads the domains below the objective's word as lines of their own, but those of variables
+    /// that have one already.
+    pub(super) fn read_domains_below(&mut self, tree: &mut Formulation) {
+        let Some((from, to)) = self.below.take() else { return };
+        (self.at, self.end, self.first) = (from, to, from);
+        self.place = Surroundings::default();
+        let lines = self.statements().unwrap_or_default();
+        let named = |e: &Expression| match &e.kind {
+            Kind::Name(name) => Some(name.text.clone()),
+            _ => None,
+        };
+        let known: BTreeSet<String> = tree
+            .statements
+            .iter()
+            .filter(|line| is_domain(line))
+            .flat_map(|line| &line.left)
+            .filter_map(named)
+            .collect();
+        let new =
+            |line: &Line| !line.left.iter().filter_map(named).any(|name| known.contains(&name));
+        tree.statements.extend(lines.into_iter().filter(new));
+    }
+
+    /// The place of the word in `Find x, y that minimise …`, where such a sentence begins here.
+    pub(super) fn asked_objective(&self) -> Option<usize> {
+        let first = &self.tokens[self.at];
+        let asks = ["find", "determine", "choose"];
+        if !first.gap.has(Gap::NEWLINE) || !asks.contains(&first.text.to_lowercase().as_str()) {
+            return None;
+        }
+        let line = self.tokens.iter().enumerate().skip(self.at + 1).take(SENTENCE);
+        let line = line.take_while(|(_, t)| !t.gap.has(Gap::NEWLINE) && t.kind != T::Break);
+        let mut words = line.take_while(|(_, t)| !t.kind.is_relation());
+        words.find(|(_, t)| matches!(t.kind, T::Minimise | T::Maximise)).map(|(at, _)| at)
     }
 
     /// Whether `\\min_{…}` at a place names variables and does not run over a set.
@@ -66,7 +129,18 @@ impl Parser<'_> {
         }
         let Some(close) = self.closing(self.at + 2) else { return self.ahead(2) == T::Word };
         let inner = self.tokens.get(self.at + 3..close).unwrap_or_default();
-        inner.iter().all(|t| !t.kind.is_relation())
+        self.holds_vectors((self.at + 3, close)) || inner.iter().all(|t| !t.kind.is_relation())
+    }
+
+    /// Whether `x ∈ {0,1}^n` or `x ∈ ℝ^n` stands between two places: nothing runs over such a set.
+    fn holds_vectors(&self, (from, to): (usize, usize)) -> bool {
+        let Some(at) = (from..to).find(|&i| self.tokens[i].kind == T::In) else { return false };
+        let end = match self.tokens[at + 1].kind {
+            T::LeftBrace => self.closing(at + 1),
+            T::Reals | T::Integers | T::Naturals | T::Binaries => Some(at + 1),
+            _ => None,
+        };
+        end.and_then(|end| self.tokens.get(end + 1)).is_some_and(|t| t.kind == T::Caret)
     }
 
     /// The brace that closes the one at a place.

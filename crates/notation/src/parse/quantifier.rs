@@ -13,11 +13,10 @@ impl Parser<'_> {
         let place = Surroundings { quad_ends: true, ..self.place };
         loop {
             let before = self.at;
-            let comma = usize::from(self.peek() == T::Comma);
-            if self.statement_at(self.at + comma) {
+            if self.statement_at(self.at + self.joint()) {
                 return Ok(clauses);
             }
-            self.at += comma;
+            let comma = usize::from(self.eat(T::Comma));
             let all = self.eat(T::ForAll);
             let quad = self.gap().has(Gap::QUAD) || self.at_wide_membership();
             let condition = self.peek() == T::SuchThat;
@@ -121,8 +120,7 @@ impl Parser<'_> {
                 items.push(self.without_definition(item));
             }
             debug_assert!(self.at > before, "an item must move on");
-            let ahead = usize::from(self.peek() == T::Comma);
-            if self.statement_at(self.at + ahead) {
+            if self.statement_at(self.at + self.joint()) {
                 return Ok(items);
             }
             // i = 1,…,m and k = 1,…,n
@@ -141,6 +139,12 @@ impl Parser<'_> {
                 return Ok(items);
             }
         }
+    }
+
+    /// How many tokens `,` or `, and` has here.
+    fn joint(&self) -> usize {
+        let comma = self.peek() == T::Comma;
+        usize::from(comma) + usize::from(comma && self.ahead(1) == T::And)
     }
 
     /// Whether `i =` or `i ∈` stands so many tokens ahead.

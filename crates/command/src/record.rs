@@ -46,10 +46,13 @@ pub(crate) fn record(
     let mut studies = Vec::new();
     for instance in 0..scenario.instances().count().max(1) {
         for study in studies_of(scenario, instance) {
-            let (reports, ended) = run_study(scenario, instance, study);
+            let (mut reports, ended) = run_study(scenario, instance, study);
             if ended == Ending::Limit {
                 let (kind, seconds) = (&study.kind, scenario.run.seconds);
                 writeln!(err, "{name}: the study {kind} was stopped by the limit of {seconds} s")?;
+                // The record says so as well: else it reads as if nobody had asked.
+                let why = format!("it was stopped by the limit of {seconds} s");
+                reports.push(Report::Left { kind: kind.clone(), why });
             }
             ending = ending.max(ended);
             let title = title_of(scenario, instance, study);

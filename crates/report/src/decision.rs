@@ -197,9 +197,11 @@ fn findings(evidence: &Evidence<'_>, marks: &Marks) -> Vec<Cited> {
         let verdicts =
             matches!(report, Report::Equivalence(_) | Report::Order(_) | Report::Growth(_));
         if verdicts {
+            // A sentence a pair: of growth each stands in the first section.
+            let most = if matches!(report, Report::Growth(_)) { usize::MAX } else { 1 };
             for (section, mark) in sections(report).into_iter().zip(own) {
-                let first = section.verdict.into_iter().take(1);
-                out.extend(first.map(|sentence| (sentence, vec![*mark])));
+                let some = section.verdict.into_iter().take(most);
+                out.extend(some.map(|sentence| (sentence, vec![*mark])));
             }
         }
     }

@@ -22,7 +22,7 @@ h3 small{font-weight:400;opacity:.7}\
 th.w,td.w{text-align:left}thead th{opacity:.7}\
 .set td{text-align:left;padding:2px 8px 2px 0;border:0;font-size:14px}.set td.l{text-align:right;padding-right:3px}\
 pre{overflow-x:auto;margin:8px 0;padding:8px;border:1px solid #8884;font:13px/18px ui-monospace,monospace;white-space:pre-wrap;overflow-wrap:anywhere}\
-@media print{body{max-width:none;margin:0;font-size:10.5pt;line-height:15pt}h2,h3{break-after:avoid}table,pre,li{break-inside:avoid}a{color:inherit}}\
+@media print{body{max-width:none;margin:0;font-size:10.5pt;line-height:15pt}h2,h3{break-after:avoid}table,svg,li{break-inside:avoid}.scroll{overflow:visible}a{color:inherit}}\
 @page{margin:20mm}";
 
 pub(super) fn document(blocks: &[Block]) -> String {

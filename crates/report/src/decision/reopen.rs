@@ -13,8 +13,9 @@ pub(super) fn conditions(evidence: &Evidence<'_>, marks: &Marks) -> Vec<Cited> {
     for (place, (_, report)) in evidence.studies.iter().enumerate() {
         let mut own = Vec::new();
         of_study(report, &mut own);
-        let cited: Vec<usize> = marks.study(place).into_iter().collect();
-        out.extend(own.into_iter().map(|condition| (condition, cited.clone())));
+        let cited = |section: usize| marks.studies[place].get(section).copied();
+        let own = own.into_iter();
+        out.extend(own.map(|(condition, at)| (condition, cited(at).into_iter().collect())));
     }
     let stopped = evidence.results.iter().filter(|result| result.status == Status::Limit);
     let stopped: Vec<&str> = stopped.map(|result| result.rival.as_str()).collect();
@@ -26,12 +27,20 @@ pub(super) fn conditions(evidence: &Evidence<'_>, marks: &Marks) -> Vec<Cited> {
         out.push((condition, marks.results.clone()));
     }
     let mut beside = |condition: &str| out.push((condition.to_owned(), Vec::new()));
-    let has = |kind: &str| evidence.studies.iter().any(|(_, report)| report.kind() == kind);
-    if !has("equivalence") {
-        beside("doubt that the rivals are the same problem: that was not studied");
+    let asked = |kind: &str| evidence.studies.iter().any(|(_, report)| report.kind() == kind);
+    let has = |kind: &str| {
+        let mut made = evidence.studies.iter().map(|(_, report)| report);
+        made.any(|report| report.kind() == kind && !matches!(report, Report::Left { .. }))
+    };
+    match (has("equivalence"), asked("equivalence")) {
+        (true, _) => {}
+        (_, true) => beside("doubt that the rivals are the same problem: that was not settled"),
+        _ => beside("doubt that the rivals are the same problem: that was not studied"),
     }
-    if !has("growth") {
-        beside("an instance of another size: growth was not studied");
+    match (has("growth"), asked("growth")) {
+        (true, _) => {}
+        (_, true) => beside("an instance of another size: the study of growth came to no end"),
+        _ => beside("an instance of another size: growth was not studied"),
     }
     let data = if evidence.scenario.instance.is_some() {
         "another objective, other data or another choice of depot or root"
@@ -43,56 +52,57 @@ pub(super) fn conditions(evidence: &Evidence<'_>, marks: &Marks) -> Vec<Cited> {
     out
 }
 
-fn of_study(report: &Report, out: &mut Vec<String>) {
+/// The conditions of a study, each with the place of the section that it is read off.
+fn of_study(report: &Report, out: &mut Vec<(String, usize)>) {
+    let mut first = |condition: String| out.push((condition, 0));
     match report {
         Report::Equivalence(verdict) => {
             let pair = verdict.rivals.join(" and ");
             match (verdict.equivalent, verdict.kind) {
                 (Some(true), EquivalenceKind::NonNegativeCosts) => {
-                    out.push(format!("a negative cost: {pair} agree for costs of 0 or more alone"));
+                    first(format!("a negative cost: {pair} agree for costs of 0 or more alone"));
                 }
                 (Some(true), EquivalenceKind::ThisObjective) => {
-                    out.push(format!("another objective: {pair} agree for this one alone"));
+                    first(format!("another objective: {pair} agree for this one alone"));
                 }
                 (Some(true), EquivalenceKind::Sets)
                     if verdict.level != EquivalenceLevel::Proved =>
                 {
-                    out.push(format!(
+                    first(format!(
                         "a plan on which {pair} differ: none was found, not all were tried"
                     ));
                 }
                 (Some(true), EquivalenceKind::Sets) => {}
                 (Some(false) | None, _) => {
-                    out.push(format!("{pair} are not shown to be the same problem"));
+                    first(format!("{pair} are not shown to be the same problem"));
                 }
             }
         }
         Report::Order(order) if order.level == OrderLevel::Observed => {
             let pair = order.rivals.join(" and ");
-            out.push(format!(
-                "another instance: the order of {pair} was observed on this one alone"
-            ));
+            first(format!("another instance: the order of {pair} was observed on this one alone"));
         }
         Report::Growth(growth) => {
             let largest = growth.means.iter().map(|mean| mean.size).max().unwrap_or(0);
-            out.push(format!(
+            first(format!(
                 "an instance larger than {}: nothing larger was run, what stands beyond is drawn out",
                 count(u64::from(largest))
             ));
             for pair in growth.pairs.iter().filter(|pair| !pair.distinguishable) {
-                out.push(format!(
+                first(format!(
                     "more instances: {} could not be told apart",
                     pair.rivals.join(" and ")
                 ));
             }
         }
         Report::Numerics(numerics) => {
-            for rival in &numerics.rivals {
-                out.push(format!(
+            for (place, rival) in numerics.rivals.iter().enumerate() {
+                let condition = format!(
                     "coefficients of {} over {}, the largest that was seen",
                     rival.rival,
                     short(rival.matrix.1)
-                ));
+                );
+                out.push((condition, place));
             }
         }
         _ => {}

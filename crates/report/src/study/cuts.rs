@@ -57,14 +57,19 @@ fn verdict(rival: &RivalCuts) -> String {
     match rival.chosen.last() {
         None => format!("No class lifts its bound of {}.", short(bound)),
         Some((_, reached)) => format!(
-            "{} the bound from {} to {}; all classes together to {}.",
+            "{} the bound from {} to {}; all classes together to {}{}.",
             match names.as_slice() {
                 [one] => format!("The class {one} lifts"),
                 several => format!("The classes {} lift", and(several)),
             },
             short(bound),
             short(*reached),
-            short(all)
+            short(all),
+            if (all - bound).abs() < (reached - bound).abs() - 1e-9 {
+                ", which is less: more cuts at once are not always better ones"
+            } else {
+                ""
+            }
         ),
     }
 }

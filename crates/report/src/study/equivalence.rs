@@ -61,14 +61,19 @@ fn shared(shared: &[(String, u32)]) -> String {
 
 fn main(verdict: &Equivalence) -> String {
     let [a, b] = &verdict.rivals;
+    // How far it goes, as the test says it: "the same 1, 2, 6 plans on the first 2 to 4".
+    let compared =
+        verdict.evidence.iter().find(|one| one.test == "every plan" && one.agrees == Some(true));
+    let compared = compared.map_or_else(String::new, |one| format!(" ({})", one.outcome));
+    let part = format!(
+        "every plan of sub-instances was compared{compared}, and nothing tells them apart on this one"
+    );
     let tried = match verdict.level {
         Level::Proved if verdict.evidence.iter().any(|one| one.test.starts_with("rows of")) => {
             "no plan of either breaks a row of the other"
         }
         Level::Proved => "every plan of this instance was compared",
-        Level::Enumerated => {
-            "every plan of sub-instances was compared, and nothing tells them apart on this one"
-        }
+        Level::Enumerated => &part,
         Level::Unrefuted => "nothing that was tried tells them apart",
     };
     match (verdict.equivalent, verdict.kind) {

@@ -54,8 +54,19 @@ pub(super) fn separation(class: Class) -> &'static str {
     }
 }
 
-/// A share in words.
+/// A share in words, to two digits: it was told as "0.0130719 times".
 pub(super) fn share(part: f64, whole: f64) -> String {
     let share = if whole > 0.0 { part / whole } else { 0.0 };
-    format!("{} times", crate::words::short(share))
+    let rounded = format!("{share:.1e}").parse().unwrap_or(share);
+    format!("{} times", crate::words::short(rounded))
+}
+
+#[cfg(test)]
+mod tests {
+    #[test]
+    fn a_share_is_told_to_two_digits() {
+        assert_eq!(super::share(3.93978, 1.0), "3.9 times");
+        assert_eq!(super::share(0.0130719, 1.0), "0.013 times");
+        assert_eq!(super::share(1.0, 0.0), "0 times");
+    }
 }

@@ -26,6 +26,16 @@ pub(super) struct Printer<'t> {
     whole: BTreeSet<&'t str>,
 }
 
+/// Signs around an expression, as tall as it where it holds a fraction or a sum.
+fn fenced((open, close): (&str, &str), inner: &str) -> String {
+    let tall = ["\\frac", "\\sum", "\\prod"].iter().any(|sign| inner.contains(sign));
+    if tall {
+        format!("\\left{open} {inner} \\right{close}")
+    } else {
+        format!("{open} {inner} {close}")
+    }
+}
+
 impl<'t> Printer<'t> {
     pub(super) fn new(tree: &'t Formulation) -> Self {
         Self { whole: super::whole_names(tree) }
@@ -133,7 +143,7 @@ impl<'t> Printer<'t> {
             Kind::Set(items) => format!("\\{{{}\\}}", self.list(items)),
             Kind::Range(from, to) => {
                 let (from, to) = (self.at(from, SUM), self.at(to, SUM));
-                format!("\\{{{from} \\ldots {to}\\}}")
+                format!("\\{{{from}, \\ldots, {to}\\}}")
             }
             Kind::Builder(member, conditions) => {
                 format!("\\{{{} \\mid {}\\}}", self.expression(member), self.list(conditions))
@@ -223,9 +233,9 @@ impl<'t> Printer<'t> {
     fn call(&self, function: Function, arguments: &[Expression]) -> String {
         let one = || self.joined(arguments, ", ", SUM);
         match function {
-            Function::Floor => format!("\\lfloor {} \\rfloor", one()),
-            Function::Ceiling => format!("\\lceil {} \\rceil", one()),
-            Function::Bars => format!("\\lvert {} \\rvert", one()),
+            Function::Floor => fenced(("\\lfloor", "\\rfloor"), &one()),
+            Function::Ceiling => fenced(("\\lceil", "\\rceil"), &one()),
+            Function::Bars => fenced(("\\lvert", "\\rvert"), &one()),
             Function::Minimum => format!("\\min\\{{{}\\}}", self.list(arguments)),
             Function::Maximum => format!("\\max\\{{{}\\}}", self.list(arguments)),
         }

@@ -45,9 +45,9 @@ subject to
 \text{minimise}\quad & \sum_{(i,j) \in A} \mathit{dist}_{i,j} \, x_{ij} \\
 \text{subject to}\quad & \sum_{j : (i,j) \in A} x_{ij} = 1 && \forall i \in V \tag{leave} \\
 & u_{i} - u_{j} + (n - 1) \, x_{i,j} \leq n - 2 && \forall (i,j) \in A : i \neq r, j \neq r \tag{order} \\
-& \sum_{t = 1}^{n} \lambda_{t} \, (1 - y_{t}) \geq \lceil \frac{n}{2} \rceil \\
+& \sum_{t = 1}^{n} \lambda_{t} \, (1 - y_{t}) \geq \left\lceil \frac{n}{2} \right\rceil \\
 & x_{i,j} \in \{0, 1\} && \forall (i,j) \in A \\
-& y_{t} \in \mathbb{R}_+ && \forall t \in \{1 \ldots n\}
+& y_{t} \in \mathbb{R}_+ && \forall t \in \{1, \ldots, n\}
 \end{align*}
 ";
     assert_eq!(printed(text), wanted);

@@ -1,5 +1,7 @@
 //! Named graphs of the literature, and graphs as named blocks.
 
+use crate::theory::stable_sets;
+
 /// Edges by the places of their ends.
 pub type Edges = Vec<(usize, usize)>;
 
@@ -78,4 +80,18 @@ pub fn network(count: usize, edges: &Edges) -> String {
 #[must_use]
 pub fn names(letter: &str, count: usize) -> String {
     (0..count).map(|k| format!("{letter}{k}")).collect::<Vec<_>>().join(" ")
+}
+
+/// What a colouring needs beside its graph, as blocks: how many colours, and all stable sets that hold no
+/// further node.
+#[must_use]
+pub fn colours_and_sets(nodes: &[String], edges: &[Vec<String>], colours: usize) -> String {
+    let sets = stable_sets(nodes, edges);
+    let lists: Vec<String> = (0..sets.len()).map(|p| format!("p{p}")).collect();
+    let lines: Vec<String> = lists.chunks(100).map(|line| line.join(" ")).collect();
+    let mut text = format!("h = {colours}\n\nP\n{}\n\na by i, p\n", lines.join("\n"));
+    for (set, name) in sets.iter().zip(&lists) {
+        set.iter().for_each(|node| text.push_str(&format!("{node} {name} 1\n")));
+    }
+    text
 }

@@ -6,10 +6,11 @@
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 
+use hullward_tests_reference::graphs::colours_and_sets;
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::round_trip::{instance, rival, root, solve};
 use hullward_tests_reference::shops::shop;
-use hullward_tests_reference::theory::{labels, stable_sets};
+use hullward_tests_reference::theory::labels;
 use hullward_tests_reference::{agree, open_data};
 use instance::{Datum, Instance};
 use tree::{Settings, Status};
@@ -133,14 +134,8 @@ fn colouring(on: &Instance, colours: usize) -> Instance {
         panic!("no graph")
     };
     let edges: String = rows.iter().map(|edge| format!("{}\n", edge.join(" "))).collect();
-    let sets = stable_sets(&nodes, rows);
-    let names: Vec<String> = (0..sets.len()).map(|p| format!("p{p}")).collect();
-    let lists: Vec<String> = names.chunks(100).map(|line| line.join(" ")).collect();
-    let mut text = format!("V\n{}\n\nE by i, j\n{edges}\nh = {colours}\n\nP\n", nodes.join(" "));
-    text.push_str(&format!("{}\n\na by i, p\n", lists.join("\n")));
-    for (set, name) in sets.iter().zip(&names) {
-        set.iter().for_each(|node| text.push_str(&format!("{node} {name} 1\n")));
-    }
+    let rest = colours_and_sets(&nodes, rows, colours);
+    let text = format!("V\n{}\n\nE by i, j\n{edges}\n{rest}", nodes.join(" "));
     instance(&text)
 }
 
@@ -187,6 +182,33 @@ fn chromatic_numbers() {
     let model = rival("colouring/representatives", &on);
     let Verdict::Optimal(found) = highs(&model, &[], false) else { panic!("queen7_7") };
     assert!(agree(found, 7.0, 1e-7), "queen7_7: {found}");
+}
+
+/// Chromatic numbers of boards of queens (DIMACS colouring benchmarks): the stable sets bound by as much, rounded
+/// up, and on the smallest board a plan has no more by our own search and by HiGHS. A graph of Mycielski is bounded by
+/// the fraction of Larsen, Propp & Ullman 1995; to prove its six colours is hard for any search.
+#[test]
+fn chromatic_numbers_by_stable_sets() {
+    let fifth = 941.0 / 290.0 + 290.0 / 941.0;
+    let bound = |name: &str| {
+        let on = read(&format!("colour/{name}.col"), "DIMACS graphs")?;
+        let model = rival("colouring/stable-sets", &colouring(&on, 9));
+        let found = root(&model).bound.unwrap();
+        Some((model, found))
+    };
+    for (name, best) in [("queen6_6", 7.0), ("queen7_7", 7.0), ("queen8_8", 9.0)] {
+        let Some((model, found)) = bound(name) else { return };
+        assert!(agree((found - 1e-6).ceil(), best, 1e-9), "{name}: {found}");
+        if name == "queen6_6" {
+            let found = solve(&model, Settings::production());
+            assert_eq!(found.status, Status::Optimal, "{name}");
+            assert!(agree(found.incumbent.unwrap(), best, 1e-9), "{name}: {:?}", found.incumbent);
+            let Verdict::Optimal(found) = highs(&model, &[], true) else { panic!("{name}") };
+            assert!(agree(found, best, 1e-7), "{name}: {found}");
+        }
+    }
+    let Some((_, found)) = bound("myciel5") else { return };
+    assert!(agree(found, fifth, 1e-8), "myciel5: {found}");
 }
 
 /// The joined links bound by nothing, the split links and the radii by the published optimum.

@@ -2,7 +2,7 @@
 
 use std::collections::BTreeMap;
 
-use hullward_tests_reference::graphs::{Edges, graph, network};
+use hullward_tests_reference::graphs::{Edges, colours_and_sets, graph, network};
 use hullward_tests_reference::round_trip::{formulation, instance, rival, root};
 
 use crate::{Record, row, shipped, value_of, whole};
@@ -22,11 +22,23 @@ pub(crate) fn stable(record: &Record) -> Option<f64> {
 }
 
 pub(crate) fn colours(record: &Record) -> Option<f64> {
-    if !record.is("graph colouring") || !record.formulation.starts_with("asymmetric") {
+    if !record.is("graph colouring") {
         return None;
     }
     let (nodes, edges) = graph(&record.instance)?;
-    Some(value_of(shipped("colouring/representatives"), &instance(&network(nodes, &edges)), true))
+    let text = network(nodes, &edges);
+    let form = record.formulation.split(' ').next().unwrap();
+    if form == "asymmetric" {
+        return Some(value_of(shipped("colouring/representatives"), &instance(&text), true));
+    }
+    if !["any", "set"].contains(&form) {
+        return None;
+    }
+    let labels: Vec<String> = (0..nodes).map(|k| format!("n{k}")).collect();
+    let ends: Vec<Vec<String>> =
+        edges.iter().map(|&(a, b)| vec![labels[a].clone(), labels[b].clone()]).collect();
+    let on = instance(&(text + &colours_and_sets(&labels, &ends, nodes)));
+    Some(value_of(shipped("colouring/stable-sets"), &on, record.bounds()))
 }
 
 /// Each node matched: the degree rows as equations, minimised.

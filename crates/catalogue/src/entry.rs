@@ -70,6 +70,15 @@ pub fn find(id: &str) -> Option<Entry> {
     entries().into_iter().find(|entry| entry.id == id)
 }
 
+/// The data of a family that its assumption asks to be 0 or more, by name.
+#[must_use]
+pub fn nonnegative(family: &str) -> Vec<String> {
+    let table = families().find(|(name, _)| *name == family).map(|(_, table)| table);
+    let names = table.as_ref().and_then(|table| table.get("nonnegative")?.as_array());
+    let names = names.into_iter().flatten().filter_map(Value::as_str);
+    names.map(str::to_owned).collect()
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

@@ -3,7 +3,7 @@
 //!
 //! | module | holds |
 //! |---|---|
-//! | [`mod@entry`] | the shipped formulations: [`entries`], [`find`] |
+//! | [`mod@entry`] | the shipped formulations: [`entries`], [`find`], [`nonnegative`] |
 //! | [`relation`] | what is published about the bounds of rivals: [`relations`] |
 //! | [`generator`] | seeded instances as one would paste them: [`generate`] |
 //!
@@ -32,7 +32,7 @@ pub mod generator;
 pub mod relation;
 mod shipped;
 
-pub use entry::{Entry, entries, find};
+pub use entry::{Entry, entries, find, nonnegative};
 pub use generator::{Class, generate};
 pub use relation::{Level, Order, Relation, relations};
 

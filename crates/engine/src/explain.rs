@@ -2,9 +2,15 @@
 
 use record::message::{Explanation, NOTE};
 
+use crate::assumption;
+
 /// The meaning of a code, as a complaint carries it; empty where there is no such code.
 #[must_use]
 pub fn explanation(code: &str) -> Explanation {
+    if code == assumption::CODE {
+        let (code, meaning) = (code.to_owned(), assumption::MEANING.to_owned());
+        return Explanation { code, meaning, example: String::new() };
+    }
     let found = notation::help(code.strip_prefix(NOTE).unwrap_or(code));
     let (meaning, example) = found.map_or(("", ""), |help| (help.meaning, help.example));
     Explanation { code: code.to_owned(), meaning: meaning.to_owned(), example: example.to_owned() }
@@ -24,6 +30,7 @@ mod tests {
         let found = explanation("lint.big-m");
         assert!(found.meaning.contains("10,000") && found.example.contains("\n+"), "{found:?}");
         assert_eq!(explanation("note.name.inferred").meaning, explanation("name.inferred").meaning);
+        assert!(explanation(assumption::CODE).meaning.contains("published"));
         assert!(explanation("lint.nothing").meaning.is_empty());
         assert!(explained().all(|code| !explanation(code).meaning.is_empty()));
     }

@@ -18,6 +18,7 @@
 //! out is the same for every slice size; replies that would only repeat how far the work is are
 //! merged until they are taken.
 
+mod assumption;
 mod audit;
 mod bindings;
 mod check;

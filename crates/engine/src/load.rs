@@ -8,10 +8,11 @@ use instance::{Instance, Reading};
 use model::{FamilyState, Model};
 use notation::syntax::Formulation;
 use notation::{Binding, Checked, Diagnostic, Expansion, Limits, Progress};
-use record::message::LaneJob;
+use record::message::{Complaint, LaneJob};
 use record::results::ErrorReport;
 use record::scenario::{InstanceText, Rival, Scenario};
 
+use crate::assumption;
 use crate::fault::{fault, unknown};
 use crate::map::{of_diagnostic, of_instance};
 use crate::readings::Readings;
@@ -33,6 +34,8 @@ pub(crate) struct Notation {
     tree: Formulation,
     checked: Checked,
     warnings: Vec<Diagnostic>,
+    /// What the data do not keep of the catalogue's assumptions.
+    broken: Vec<Complaint>,
     stage: Stage,
     reading: Rc<Reading>,
     rival: Rival,
@@ -55,7 +58,7 @@ pub(crate) struct Loaded {
     /// Its model.
     pub(crate) model: Rc<Model>,
     /// What notation warns of.
-    pub(crate) complaints: Vec<record::message::Complaint>,
+    pub(crate) complaints: Vec<Complaint>,
     /// The instance's stops.
     pub(crate) stops: Vec<String>,
 }
@@ -90,8 +93,19 @@ impl Loading {
         let stage = Stage::Binding(Box::new(Binding::new(&checked, &names)));
         let rival = Rival { text: None, ..job.rival.clone() };
         let (tree, warnings) = (parse.tree, found);
-        let notation = Notation { title, text, tree, checked, warnings, stage, reading, rival };
-        Ok(Self::Notation(Box::new(notation)))
+        let from = rival.from.as_deref().unwrap_or_default();
+        let broken = assumption::broken(from, (&text, &tree), instance, &names);
+        Ok(Self::Notation(Box::new(Notation {
+            title,
+            text,
+            tree,
+            checked,
+            warnings,
+            broken,
+            stage,
+            reading,
+            rival,
+        })))
     }
 
     /// Binds and expands for about `ticks`; whether there is more to do.
@@ -144,7 +158,7 @@ impl Notation {
 
     fn finish(mut self) -> Result<Loaded, ErrorReport> {
         while self.advance(u64::MAX) {}
-        let Self { title, text, tree, checked, mut warnings, stage, reading, rival } = self;
+        let Self { title, text, tree, checked, mut warnings, broken, stage, reading, rival } = self;
         let expanded = match stage {
             Stage::Expanding(expansion) => expansion.finish(),
             Stage::Failed(wrong) => Err(wrong),
@@ -163,7 +177,11 @@ impl Notation {
         }
         Ok(Loaded {
             title: entitled(&title, &model),
-            complaints: warnings.iter().map(|found| of_diagnostic(&text, found)).collect(),
+            complaints: warnings
+                .iter()
+                .map(|found| of_diagnostic(&text, found))
+                .chain(broken)
+                .collect(),
             stops: reading.instance.as_ref().map_or_else(Vec::new, on_the_map),
             model: Rc::new(model),
         })

@@ -1,7 +1,8 @@
 //! A rival handed over to others: as MPS that was read again and compared, as journal notation,
-//! as LaTeX.
+//! as LaTeX. A model that came as MPS is written out row by row for the last two.
 
 mod compare;
+mod explicit;
 
 use std::collections::BTreeMap;
 
@@ -17,6 +18,7 @@ use crate::load::{Loaded, formulation, load};
 use crate::map::of_diagnostic;
 use crate::studies::StudyRun;
 use compare::compare;
+use explicit::explicit;
 
 /// Slices of a study that is made to its end, in non-zeros touched.
 const SLICE: u64 = 2_000_000;
@@ -101,7 +103,7 @@ pub fn tightened(scenario: &Scenario, place: (usize, usize)) -> Result<HandOver,
 /// The journal notation of a rival, in one spelling.
 ///
 /// # Errors
-/// A rival without notation, or one whose notation cannot be read.
+/// A rival whose notation cannot be read, or a model in MPS that is too large to be written out.
 pub fn notation_text(scenario: &Scenario, rival: usize) -> Result<HandOver, Refusal> {
     printed(scenario, rival, notation::print)
 }
@@ -109,7 +111,7 @@ pub fn notation_text(scenario: &Scenario, rival: usize) -> Result<HandOver, Refu
 /// The model section of a rival in LaTeX; [`notation::latex`] says how.
 ///
 /// # Errors
-/// A rival without notation, or one whose notation cannot be read.
+/// A rival whose notation cannot be read, or a model in MPS that is too large to be written out.
 pub fn latex(scenario: &Scenario, rival: usize) -> Result<HandOver, Refusal> {
     let mut handed = printed(scenario, rival, notation::latex)?;
     handed.notes.push("LaTeX needs \\usepackage{amsmath,amssymb}".to_owned());
@@ -145,7 +147,13 @@ fn printed(
     let Some(rival) = scenario.rivals.get(rival) else {
         return Err(fault("scenario", "the scenario has no such rival").into());
     };
-    let (text, _) = formulation(rival)?;
+    let (text, mut notes) = match (&rival.from, &rival.text, &rival.mps) {
+        (None, None, Some(mps)) => {
+            let (model, _) = crate::mps::read(mps)?;
+            explicit(&model).map_err(|why| fault("rival", why))?
+        }
+        _ => (formulation(rival)?.0, Vec::new()),
+    };
     let parse = notation::parse(&text);
     let complaints: Vec<Complaint> =
         parse.diagnostics.iter().map(|found| of_diagnostic(&text, found)).collect();
@@ -157,7 +165,8 @@ fn printed(
     if notation::parse(&text_again).tree != parse.tree {
         return Err(Refusal::Broken("what is printed reads as another formulation".to_owned()));
     }
-    Ok(HandOver { text: text_again, notes: not_in_notation(rival, &text), complaints })
+    notes.extend(not_in_notation(rival, &text));
+    Ok(HandOver { text: text_again, notes, complaints })
 }
 
 /// What a rival has that its printed notation does not say.

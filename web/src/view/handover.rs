@@ -28,7 +28,6 @@ pub(crate) fn TakeAway(props: &TakeProps) -> Html {
     let said = use_state_eq(String::new);
     let worker = use_mut_ref(|| None::<WorkerHandle>);
     let title = format!("{} {}", props.letter, props.title);
-    let own = props.job.rival.mps.is_some();
     let take = |form: Form, name: &'static str, ending: &'static str| {
         let (job, worker, said) = (props.job.clone(), worker.clone(), said.setter());
         let file = file_of(&title, ending);
@@ -58,9 +57,7 @@ pub(crate) fn TakeAway(props: &TakeProps) -> Html {
             <summary aria-label={format!("Take away {}", props.letter)}>{ "Take away" }</summary>
             <div class="acts">
                 for (form, name, ending) in FORMS {
-                    if form == Form::Mps || !own {
-                        <button type="button" data-testid={ending} onclick={take(form, name, ending)}>{ name }</button>
-                    }
+                    <button type="button" data-testid={ending} onclick={take(form, name, ending)}>{ name }</button>
                 }
                 <button type="button" data-testid="alone" onclick={alone}>{ "Scenario" }</button>
             </div>

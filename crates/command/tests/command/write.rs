@@ -206,6 +206,13 @@ fn mps_is_read_as_a_model_and_not_as_an_instance() {
 }
 
 #[test]
+fn a_model_in_mps_is_written_out_as_notation() {
+    let (status, out, err) = told(&["write", "-", "--as", "text"], &in_mps(KNAPSACK));
+    assert_eq!(status, 0, "{err}");
+    assert!(out.contains("5 x + 3 y") && out.contains("x ∈ ℤ"), "{out}");
+}
+
+#[test]
 fn what_cannot_be_written_is_refused_in_words() {
     let refused = |words: &[&str], text: &str, says: &str| {
         let (status, out, err) = told(words, text);
@@ -222,7 +229,6 @@ fn what_cannot_be_written_is_refused_in_words() {
     refused(&write(&["--as", "mps", "--rival", "c"]), SCENARIO, "there is no rival C: it has 2");
     let second = write(&["--as", "mps", "--rival", "a", "--instance", "2"]);
     refused(&second, SCENARIO, "there is no instance 2");
-    refused(&write(&["--as", "text"]), &in_mps(KNAPSACK), "without journal notation");
     let wrong = SCENARIO.replace("from = \"atsp/labels\"", "text = '''\nmin Σ_{i x\n'''");
     refused(&write(&["--as", "latex", "--rival", "a"]), &wrong, "-:14:");
     let broken = SCENARIO.replace("14", "1x4");

@@ -6,6 +6,7 @@ use std::ops::Range;
 use crate::MAX_STOPS;
 use crate::complaint::{Complaints, excerpt};
 use crate::number::{Number, parse};
+use crate::pace::{Pace, Slices};
 use crate::text::Line;
 
 /// What stands between cells.
@@ -57,8 +58,20 @@ pub(crate) const MAX_CELLS: usize = MAX_STOPS + 3;
 /// Finds the style of lines. Tabs win over semicolons, these over commas, these over spaces; a
 /// comma is a decimal comma where blanks separate cells that all read as numbers with one comma.
 pub(crate) fn style(lines: &[Line]) -> Style {
+    Slices::whole(async |pace| style_in_slices(lines, &pace).await)
+}
+
+/// As [`style`], in the slices of a pace.
+pub(crate) async fn style_in_slices(lines: &[Line<'_>], pace: &Pace) -> Style {
+    let separator = separator(lines);
+    let decimal_comma =
+        separator != Separator::Comma && commas_prevail(lines, separator, pace).await;
+    Style { separator, decimal_comma }
+}
+
+fn separator(lines: &[Line]) -> Separator {
     let any = |mark: char| lines.iter().any(|line| line.text.contains(mark));
-    let separator = if any('\t') && !tabs_align_only(lines) {
+    if any('\t') && !tabs_align_only(lines) {
         Separator::Tab
     } else if any(';') {
         Separator::Semicolon
@@ -66,9 +79,7 @@ pub(crate) fn style(lines: &[Line]) -> Style {
         Separator::Comma
     } else {
         Separator::Space
-    };
-    let decimal_comma = separator != Separator::Comma && commas_prevail(lines, separator);
-    Style { separator, decimal_comma }
+    }
 }
 
 /// Whether tabs stand among blanks between numbers, so that any white space separates. Where
@@ -109,9 +120,10 @@ fn commas_separate(lines: &[Line]) -> bool {
     !some_row_has_words
 }
 
-fn commas_prevail(lines: &[Line], separator: Separator) -> bool {
+async fn commas_prevail(lines: &[Line<'_>], separator: Separator, pace: &Pace) -> bool {
     let (mut commas, mut points) = (0_usize, 0_usize);
-    for line in lines {
+    for line in lines.iter().filter(|line| line.text.contains([',', '.'])) {
+        pace.spend(line.text.len()).await;
         for cell in split(line, separator) {
             commas += usize::from(is_comma_decimal(&cell.text));
             let pointed = cell.text.matches('.').count() == 1;

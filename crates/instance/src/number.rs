@@ -213,16 +213,24 @@ fn reason(body: &str, point: u8) -> NotNumber {
 
 /// The sum of numbers; none where their fractions have too little in common to be worth adding.
 pub(crate) fn total<'n>(numbers: impl IntoIterator<Item = &'n Number>) -> Option<Number> {
+    numbers.into_iter().try_fold(RBig::ZERO, plus)
+}
+
+/// A sum and a further number, as [`total`] adds.
+pub(crate) fn plus(sum: Number, number: &Number) -> Option<Number> {
     const MOST_BITS: usize = 512;
-    numbers.into_iter().try_fold(RBig::ZERO, |sum, number| {
-        let sum = sum + number;
-        (sum.denominator().bit_len() <= MOST_BITS).then_some(sum)
-    })
+    let sum = sum + number;
+    (sum.denominator().bit_len() <= MOST_BITS).then_some(sum)
 }
 
 /// That sum as text.
 pub(crate) fn total_text<'n>(numbers: impl IntoIterator<Item = &'n Number>) -> String {
-    total(numbers).map_or_else(|| "(a long fraction)".to_owned(), |sum| number_text(&sum))
+    sum_text(total(numbers).as_ref())
+}
+
+/// A sum as text, where there is one.
+pub(crate) fn sum_text(sum: Option<&Number>) -> String {
+    sum.map_or_else(|| "(a long fraction)".to_owned(), number_text)
 }
 
 /// A number as text that reads back as the same: a decimal where it ends, else a fraction.

@@ -3,7 +3,7 @@
 use std::collections::BTreeSet;
 
 use crate::blocks::{is_by_heading, is_equation};
-use crate::cells::{Separator, Style, is_word, split, style};
+use crate::cells::{Separator, Style, is_word, split, style_in_slices};
 use crate::instance::Reader;
 use crate::matrix::is_title;
 use crate::number::parse;
@@ -58,7 +58,7 @@ fn is_one_set(found: &[Line]) -> bool {
 }
 
 async fn guess_by_rows(text: &str, found: &[Line<'_>], pace: &Pace) -> Reader {
-    let style = style(found);
+    let style = style_in_slices(found, pace).await;
     let mut rows: Vec<Vec<String>> = Vec::with_capacity(found.len());
     for line in found {
         pace.spend(2 * line.text.len()).await;

@@ -5,8 +5,11 @@ use std::collections::BTreeSet;
 
 use crate::complaint::{grouped, plural};
 use crate::instance::{Datum, Instance};
-use crate::number::{Number, number_text, total_text};
+use crate::number::{Number, number_text, plus, sum_text};
 use crate::pace::Pace;
+
+/// How many numbers are sorted in one step.
+const RUN: usize = 4_096;
 
 /// A sentence for each table of numbers. O(cells · log).
 pub(crate) async fn of(instance: &Instance, pace: &Pace) -> Vec<String> {
@@ -18,11 +21,13 @@ pub(crate) async fn of(instance: &Instance, pace: &Pace) -> Vec<String> {
         }
         let unit = instance.units.get(name).filter(|unit| !unit.is_empty());
         let unit = unit.map_or_else(String::new, |unit| format!(" {unit}"));
-        let values: Vec<&Number> = cells.values().collect();
-        pace.spend(4 * cells.len()).await;
-        let numbers = numbers(&values);
-        pace.spend(4 * cells.len()).await;
-        let spread = spread(&values);
+        let mut values = Vec::with_capacity(cells.len());
+        for value in cells.values() {
+            pace.spend(1).await;
+            values.push(value);
+        }
+        let numbers = numbers(&values, pace).await;
+        let spread = spread(&values, pace).await;
         let mut places = Vec::with_capacity(*arity);
         for place in 0..*arity {
             places.push(labels(cells.keys().map(|key| key[place].as_str()), pace).await);
@@ -48,23 +53,29 @@ async fn labels<'l>(all: impl Iterator<Item = &'l str>, pace: &Pace) -> usize {
 }
 
 /// "306 numbers from 4 to 37, sum 5,312"
-fn numbers(values: &[&Number]) -> String {
-    let ends = values.iter().min().zip(values.iter().max());
-    let ends = match ends {
-        Some((least, most)) if least != most => {
-            format!(" from {} to {}", number_text(least), number_text(most))
-        }
-        Some((only, _)) => format!(", all {}", number_text(only)),
-        None => String::new(),
-    };
+async fn numbers(values: &[&Number], pace: &Pace) -> String {
     let count = plural(values.len(), "number", "numbers");
-    format!("{count}{ends}, sum {}", total_text(values.iter().copied()))
+    let Some(&first) = values.first() else { return count };
+    let (mut least, mut most, mut sum) = (first, first, Some(Number::ZERO));
+    for &value in values {
+        pace.spend(4).await;
+        least = least.min(value);
+        most = most.max(value);
+        sum = sum.and_then(|sum| plus(sum, value));
+    }
+    let ends = if least == most {
+        format!(", all {}", number_text(first))
+    } else {
+        format!(" from {} to {}", number_text(least), number_text(most))
+    };
+    format!("{count}{ends}, sum {}", sum_text(sum.as_ref()))
 }
 
 /// Whether they are whole, and how many differ.
-fn spread(values: &[&Number]) -> String {
+async fn spread(values: &[&Number], pace: &Pace) -> String {
     let fractions = values.iter().filter(|value| !value.is_int()).count();
-    let different = different(values);
+    pace.spend(values.len()).await;
+    let different = different(values, pace).await;
     let whole = match fractions {
         0 => "all whole".to_owned(),
         some => format!("{} not whole", grouped(some)),
@@ -76,17 +87,57 @@ fn spread(values: &[&Number]) -> String {
 }
 
 /// How many are different; whole numbers are compared fast.
-fn different(values: &[&Number]) -> usize {
-    let whole = |value: &&Number| {
-        value.is_int().then(|| i64::try_from(value.numerator().clone()).ok()).flatten()
-    };
-    match values.iter().map(whole).collect::<Option<Vec<i64>>>() {
-        Some(mut whole) => {
-            whole.sort_unstable();
-            whole.dedup();
-            whole.len()
+async fn different(values: &[&Number], pace: &Pace) -> usize {
+    let mut whole = Vec::with_capacity(values.len());
+    for value in values {
+        pace.spend(1).await;
+        let number = value.is_int().then(|| i64::try_from(value.numerator().clone()).ok());
+        let Some(number) = number.flatten() else { return of_all_kinds(values, pace).await };
+        whole.push(number);
+    }
+    sorted(&mut whole, pace).await;
+    whole.dedup();
+    whole.len()
+}
+
+/// How many of any numbers are different.
+async fn of_all_kinds(values: &[&Number], pace: &Pace) -> usize {
+    let mut met = BTreeSet::new();
+    for value in values {
+        pace.spend(8).await;
+        met.insert(value);
+    }
+    met.len()
+}
+
+/// Sorts in slices: runs of a fixed length, then merged by twos.
+async fn sorted(values: &mut Vec<i64>, pace: &Pace) {
+    for run in values.chunks_mut(RUN) {
+        pace.spend(2 * run.len()).await;
+        run.sort_unstable();
+    }
+    let mut length = RUN;
+    while length < values.len() {
+        let mut merged = Vec::with_capacity(values.len());
+        for pair in values.chunks(2 * length) {
+            let (mut left, mut right) = pair.split_at(length.min(pair.len()));
+            while let (Some((a, more)), Some((b, others))) =
+                (left.split_first(), right.split_first())
+            {
+                pace.spend(1).await;
+                if a <= b {
+                    merged.push(*a);
+                    left = more;
+                } else {
+                    merged.push(*b);
+                    right = others;
+                }
+            }
+            merged.extend_from_slice(left);
+            merged.extend_from_slice(right);
         }
-        None => values.iter().collect::<BTreeSet<_>>().len(),
+        *values = merged;
+        length *= 2;
     }
 }
 

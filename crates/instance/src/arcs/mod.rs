@@ -10,7 +10,7 @@ mod tests;
 use std::collections::{BTreeMap, BTreeSet};
 use std::ops::Range;
 
-use crate::cells::{Cell, Style, is_blank, is_word, split, style};
+use crate::cells::{Cell, Style, is_blank, is_word, split, style_in_slices};
 use crate::complaint::{Complaints, excerpt, grouped, plural};
 use crate::instance::{Datum, Instance, Reader};
 use crate::matrix::{Row, is_title};
@@ -69,7 +69,7 @@ struct List {
 /// Reads a list of drives. O(length · log + n²).
 pub(crate) async fn read(text: &str, sink: &mut Complaints<'_>) -> Option<(Instance, Vec<String>)> {
     let (mut list, kept) = head(text);
-    let style = style(&kept);
+    let style = style_in_slices(&kept, &sink.pace()).await;
     let mut rows = Vec::with_capacity(kept.len());
     for line in &kept {
         rows.push(Row { cells: split(line, style.separator), end: line.end() });

@@ -6,7 +6,7 @@ mod shape;
 #[cfg(test)]
 mod tests;
 
-use crate::cells::{Cell, MAX_CELLS, Separator, Style, is_blank, is_word, split, style};
+use crate::cells::{Cell, MAX_CELLS, Separator, Style, is_blank, is_word, split, style_in_slices};
 use crate::complaint::{Complaints, count, excerpt, grouped};
 use crate::finish::RoundTrip;
 use crate::number::{Number, parse};
@@ -64,7 +64,7 @@ pub(crate) async fn table<'a>(text: &'a str, sink: &mut Complaints<'_>) -> Optio
         sink.error(kept[MAX_STOPS + 1].span(), "too-large", message, mend);
         return None;
     }
-    let style = style(&kept);
+    let style = style_in_slices(&kept, &sink.pace()).await;
     let mut rows = Vec::with_capacity(kept.len());
     for line in &kept {
         rows.push(Row { cells: split(line, style.separator), end: line.end() });

@@ -45,7 +45,7 @@ pub(crate) async fn square(
             square.put(i, j, value);
         }
     }
-    let mirrored = mirror_blank_half(&mut square);
+    let mirrored = mirror_blank_half(&mut square, sink).await;
     Some((square, mirrored))
 }
 
@@ -188,10 +188,11 @@ fn permutation(columns: &[Cell], rows: &[Cell]) -> Option<Vec<usize>> {
 
 /// Where one half of a square is blank throughout and the other is not, takes each distance for
 /// both directions and says so.
-fn mirror_blank_half(square: &mut Square) -> bool {
+async fn mirror_blank_half(square: &mut Square, sink: &Complaints<'_>) -> bool {
     let n = square.len();
     let (mut lower, mut upper) = (0, 0);
     for i in 0..n {
+        sink.spend(i).await;
         for j in 0..i {
             lower += usize::from(square.at(i, j).is_some());
             upper += usize::from(square.at(j, i).is_some());

@@ -5,7 +5,7 @@ use crate::diagnostic::syntax as message;
 use crate::latex::unescaped;
 use crate::lex::lex;
 use crate::lex::prose::PROSE;
-use crate::lex::token::{Gap, Kind as T};
+use crate::lex::token::{Gap, Kind as T, Token};
 use crate::place::Span;
 use crate::syntax::{Expression, Formulation, Kind, Line, Objective, Section, Unread};
 
@@ -184,7 +184,12 @@ impl Parser<'_> {
         let close = if named { self.closing(self.at)? } else { return None };
         let next = self.tokens.get(close + 1)?;
         let sense = matches!(next.kind, T::Min | T::Max | T::Minimise | T::Maximise);
-        (sense && !next.gap.has(Gap::BLANK_LINE)).then_some(close + 1)
+        // (x_i + y_i) min … is a product
+        let dash = |t: &Token| matches!(t.kind, T::Minus | T::Slash);
+        let inner = &self.tokens[self.at..close];
+        let product = inner.iter().any(|t| t.kind.is_operator() && !dash(t))
+            || inner.iter().any(dash) && inner.iter().any(|t| t.kind == T::Underscore);
+        (sense && !product && !next.gap.has(Gap::BLANK_LINE)).then_some(close + 1)
     }
 
     /// A line with a relation behind the objective is a constraint, "subject to" or not.

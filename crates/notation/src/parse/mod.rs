@@ -330,6 +330,17 @@ mod tests {
         assert_eq!(codes, ["syntax.no-relation"]);
     }
 
+    /// A sum in brackets before a least value was taken for the name of a second objective.
+    #[test]
+    fn a_bracket_before_a_least_value_is_a_factor() {
+        for row in ["(x_i + y_i) min_{j ∈ V} x_j ≤ 1", "(x_i − y_i) min_{j ∈ V} x_j ≤ 1"]
+        {
+            let tree = read(&format!("minimise\n x\nsubject to\n {row} ∀ i ∈ V\n"));
+            assert!(matches!(tree.statements[0].left[0].kind, Kind::Multiplicative(..)), "{row}");
+        }
+        assert!(read("data\n V\n\n(IP-1) min Σ_{i ∈ V} x_i\n").objective.is_some());
+    }
+
     #[test]
     fn domains_read_as_memberships() {
         let domain = |line: &str| {

@@ -56,10 +56,13 @@ impl Readings {
     /// Reads on in a text for about `ticks`; whether there is more to do before [`Self::read`] has
     /// it at once. A text that was being read and is another gives way.
     pub(crate) fn advance(&mut self, text: &InstanceText, ticks: u64) -> bool {
-        if is_mps(text) || self.last.as_ref().is_some_and(|(source, _)| source.is(text)) {
+        // What a text is, is asked once and not in every slice.
+        let open = self.open.as_ref().is_some_and(|(source, _)| source.is(text));
+        let last = |(source, _): &(Source, Rc<Reading>)| source.is(text);
+        if !open && (is_mps(text) || self.last.as_ref().is_some_and(last)) {
             return false;
         }
-        if !self.open.as_ref().is_some_and(|(source, _)| source.is(text)) {
+        if !open {
             let source = Source::new(text);
             self.open = source.reading().ok().map(|reading| (source, reading));
         }

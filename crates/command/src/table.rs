@@ -119,7 +119,7 @@ pub(crate) fn evidence(report: &Report, instance: &str, out: &mut dyn Write) -> 
         if !instance.is_empty() {
             writeln!(out, "on {instance}")?;
         }
-        for sentence in &section.verdict {
+        for sentence in section.faults.iter().chain(&section.verdict) {
             writeln!(out, "{sentence}")?;
         }
         if let Some(table) = section.table {

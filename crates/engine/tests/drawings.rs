@@ -150,6 +150,57 @@ fn starts_are_a_chart_of_machines_over_time() {
     assert!(of(1, "frame").1 <= of(2, "frame").0 + 1e-9);
 }
 
+/// Completion times are a strip for each ship that ends there and is as long as its unloading, whether
+/// two ships or an order of all are chosen; starts of a job shop are not taken for ends.
+#[test]
+fn completion_times_are_a_chart_that_ends_there() {
+    let crane = scenario(include_str!("../../../scenarios/one-crane.toml")).instance.unwrap();
+    let hours = [2.0, 5.0, 1.0, 3.0, 1.0, 4.0, 4.0];
+    for id in ["machine/big-m", "machine/linear-ordering", "machine/parallel"] {
+        let detail = root(crane.clone(), id).unwrap();
+        let Picture::Strips { strips, time: true } = &detail.drawings[0].picture else {
+            panic!("{id}: {:?}", names(&detail))
+        };
+        assert_eq!(strips.len(), 7, "{id}");
+        for (strip, hours) in strips.iter().zip(hours) {
+            let part = &strip.parts[0];
+            assert!((part.to - part.from - hours).abs() < 1e-9, "{id}: {strip:?}");
+            assert!(part.from >= -1e-9, "{id}: {strip:?}");
+        }
+    }
+}
+
+/// Of a graph that is too large to be drawn whole, the part is drawn in which values are not whole.
+#[test]
+fn a_large_graph_is_drawn_where_values_are_not_whole() {
+    let ring = |first: u32, many: u32| {
+        let last = first + many - 1;
+        let steps = (first..last).map(|one| format!("v{one} v{}\n", one + 1));
+        let steps: String = steps.collect();
+        format!("{steps}v{last} v{first}\n")
+    };
+    // A ring whose every second vertex is worth more, and a triangle, at which alone 0.5 is best.
+    let vertices: String = (1..=123).map(|v| format!("v{v} ")).collect();
+    let worth = |v: u32| if v <= 120 && v % 2 == 1 { 3 } else { 1 };
+    let worths: String = (1..=123).map(|v| format!("v{v} {}\n", worth(v))).collect();
+    let pairs = format!("{}{}", ring(1, 120), ring(121, 3));
+    let text = format!("V\n{vertices}\n\nE by i, j\n{pairs}\nw by i\n{worths}");
+    let instance =
+        InstanceText { text, reader: Some("blocks".to_owned()), ..InstanceText::default() };
+    let detail = root(instance, "stable-set/edges").unwrap();
+    let graph = detail.drawings.iter().find_map(|drawing| match &drawing.picture {
+        Picture::Graph { vertices, edges, .. } => Some((&drawing.name, vertices, edges)),
+        _ => None,
+    });
+    let (name, vertices, edges) = graph.unwrap_or_else(|| panic!("{:?}", names(&detail)));
+    assert!(name.contains("80 of 123 nodes"), "{name}");
+    assert_eq!(vertices.len(), 80);
+    let half = vertices.iter().filter(|vertex| vertex.value == Some(0.5));
+    let half: Vec<&str> = half.map(|vertex| vertex.label.as_str()).collect();
+    assert!(["v121", "v122", "v123"].iter().all(|label| half.contains(label)), "{half:?}");
+    assert!(edges.iter().all(|&(one, other)| one < 80 && other < 80) && edges.len() > 30);
+}
+
 /// Of starts by the hour, the rows of the hours say how long each takes.
 #[test]
 fn starts_by_period_are_a_chart_too() {

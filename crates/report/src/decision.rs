@@ -315,7 +315,7 @@ fn orders(evidence: &Evidence<'_>) -> Vec<(String, Section)> {
 fn section(instance: &str, mark: usize, section: Section) -> Vec<Block> {
     let on = if instance.is_empty() { String::new() } else { format!(" ({instance})") };
     let mut out = vec![Block::Part(mark, format!("{}{on}", section.heading))];
-    out.extend(section.verdict.into_iter().map(Block::Text));
+    out.extend(section.faults.into_iter().chain(section.verdict).map(Block::Text));
     out.extend(section.figure.map(|figure| Block::Figure(figure.svg())));
     out.extend(section.table.map(Block::Table));
     out.extend(section.notes.into_iter().map(Block::Text));

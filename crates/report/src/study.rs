@@ -28,6 +28,8 @@ pub use order::over_instances;
 pub struct Section {
     /// Its heading.
     pub heading: String,
+    /// What could not be taken of what was given, each with its line and its mend.
+    pub faults: Vec<String>,
     /// What it comes to, in sentences.
     pub verdict: Vec<String>,
     /// A drawing of it; its words stand in the verdict too.

@@ -131,7 +131,11 @@ impl Browser {
     /// # Errors
     /// Those of the driver.
     pub async fn protocol(&self, method: &str, parameters: Value) -> Outcome<Value> {
-        Ok(self.client.issue_cmd(Post::protocol(method, &parameters)).await?)
+        self.post(Post::protocol(method, &parameters)).await
+    }
+
+    pub(crate) async fn post(&self, command: Post) -> Outcome<Value> {
+        Ok(self.client.issue_cmd(command).await?)
     }
 
     /// Seconds that scripts of the page have taken so far, as the browser's own clock of tasks says.

@@ -23,6 +23,11 @@ impl Post {
     pub(crate) fn console() -> Self {
         Self { endpoint: "se/log", body: json!({ "type": "browser" }) }
     }
+
+    /// What was traced.
+    pub(crate) fn trace() -> Self {
+        Self { endpoint: "se/log", body: json!({ "type": "performance" }) }
+    }
 }
 
 impl WebDriverCompatibleCommand for Post {

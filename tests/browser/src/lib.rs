@@ -5,6 +5,7 @@
 //! | [`visit`] | one test's browser with the page open, from a file or from the server |
 //! | [`browser`] | finding by role and name, typing, waiting, what the console said |
 //! | [`screen`] | sizes, light and dark, screenshots |
+//! | [`tasks`] | what the page's own thread did, from the browser's trace |
 //! | [`worker`] | a worker of the page's own, spoken to in its own messages |
 //!
 //! The page must have been built (`cargo xtask page --no-serve`); `cargo xtask test --only
@@ -17,6 +18,7 @@ mod server;
 
 pub mod browser;
 pub mod screen;
+pub mod tasks;
 pub mod visit;
 pub mod worker;
 

@@ -8,6 +8,7 @@ use tokio::sync::Mutex;
 
 use crate::browser::Browser;
 use crate::driver::{chromedriver, geckodriver};
+use crate::tasks::CATEGORIES;
 use crate::{Outcome, fault, server};
 
 /// Where the page is opened from.
@@ -53,6 +54,22 @@ where
     Ok(())
 }
 
+/// As [`visit_chromium`], with the browser's trace on, for [`Browser::tasks`].
+///
+/// # Errors
+/// As [`visit`].
+#[allow(clippy::print_stdout, reason = "a test that is left out says so")]
+pub async fn visit_traced<F>(source: Source, test: F) -> Outcome<()>
+where
+    F: AsyncFnOnce(&Browser) -> Outcome<()>,
+{
+    if Kind::wanted() == Kind::Chromium {
+        return visit_with(source, chromium(true), test).await;
+    }
+    println!("LEFT OUT: it needs Chromium's own protocol");
+    Ok(())
+}
+
 /// One browser at a time: tests measure how soon the page answers.
 static TURN: Mutex<()> = Mutex::const_new(());
 
@@ -81,6 +98,17 @@ pub async fn visit_loudly<F>(source: Source, test: F) -> Outcome<()>
 where
     F: AsyncFnOnce(&Browser) -> Outcome<()>,
 {
+    let capabilities = match Kind::wanted() {
+        Kind::Chromium => chromium(false),
+        Kind::Firefox => firefox(),
+    };
+    visit_with(source, capabilities, test).await
+}
+
+async fn visit_with<F>(source: Source, capabilities: Capabilities, test: F) -> Outcome<()>
+where
+    F: AsyncFnOnce(&Browser) -> Outcome<()>,
+{
     let _turn = TURN.lock().await;
     let served = if source == Source::Server { Some(server::start().await?) } else { None };
     let address = match &served {
@@ -93,10 +121,7 @@ where
         Kind::Firefox => geckodriver().await?,
     };
     let client = ClientBuilder::new(HttpConnector::new())
-        .capabilities(match kind {
-            Kind::Chromium => chromium(),
-            Kind::Firefox => firefox(),
-        })
+        .capabilities(capabilities)
         .connect(driver.said())
         .await?;
     client.goto(&address).await?;
@@ -117,7 +142,7 @@ fn firefox() -> Capabilities {
     capabilities
 }
 
-fn chromium() -> Capabilities {
+fn chromium(traced: bool) -> Capabilities {
     let mut capabilities = Capabilities::new();
     let arguments = [
         "--headless=new",
@@ -129,7 +154,15 @@ fn chromium() -> Capabilities {
         "--no-first-run",
         "--window-size=1280,900",
     ];
-    capabilities.insert("goog:chromeOptions".to_owned(), json!({ "args": arguments }));
-    capabilities.insert("goog:loggingPrefs".to_owned(), json!({ "browser": "ALL" }));
+    let mut options = json!({ "args": arguments });
+    let mut logs = json!({ "browser": "ALL" });
+    if traced {
+        logs["performance"] = "ALL".into();
+        let traced =
+            json!({ "enableNetwork": false, "enablePage": false, "traceCategories": CATEGORIES });
+        options["perfLoggingPrefs"] = traced;
+    }
+    capabilities.insert("goog:chromeOptions".to_owned(), options);
+    capabilities.insert("goog:loggingPrefs".to_owned(), logs);
     capabilities
 }

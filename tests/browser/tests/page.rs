@@ -57,6 +57,9 @@ mod editing;
 #[path = "page/studies.rs"]
 mod studies;
 
+#[path = "page/production.rs"]
+mod production;
+
 #[path = "page/linearising.rs"]
 mod linearising;
 

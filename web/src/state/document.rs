@@ -152,6 +152,8 @@ pub(crate) enum DocumentAction {
     Steer(Steer),
     /// A study of this kind is asked for.
     Study(&'static str),
+    /// Other results of the team's own solver are pasted.
+    Table(String),
 }
 
 impl Document {
@@ -379,6 +381,7 @@ impl Document {
             DocumentAction::Arrange(arrange) => document.arrange(arrange),
             DocumentAction::Steer(steer) => document.steer(steer),
             DocumentAction::Study(kind) => document.with_study(kind),
+            DocumentAction::Table(text) => document.with_table(text),
         }
         document.release_changed(&self);
         document.into()

@@ -91,6 +91,7 @@ fn change(document: &Document, action: &DocumentAction) -> Option<Change> {
         DocumentAction::Arrange(arrange) => done(arrange.words()),
         DocumentAction::Steer(steer) => done(steer.words()),
         DocumentAction::Study(_) => done("study that was asked for"),
+        DocumentAction::Table(_) => typed("table of results"),
         DocumentAction::Read(..)
         | DocumentAction::Catalogue(_)
         | DocumentAction::Bound(_)

@@ -5,15 +5,16 @@ use std::rc::Rc;
 
 use record::file;
 use record::results::RivalResult;
-use record::scenario::{Scenario, Study};
+use record::scenario::{Field, Scenario, Study};
 use record::study::Report;
 use report::decision::{self, Evidence};
 use yew::Reducible;
 
 use crate::state::document::Document;
+use crate::state::instances::name_on_record;
 
 /// The kinds, each with its question and what is done to answer it.
-pub(crate) const KINDS: [(&str, &str, &str); 11] = [
+pub(crate) const KINDS: [(&str, &str, &str); 12] = [
     (
         "equivalence",
         "Are the rivals the same problem?",
@@ -75,15 +76,48 @@ pub(crate) const KINDS: [(&str, &str, &str); 11] = [
         "Why is there no plan?",
         "The fewest rows that cannot hold together, and the cheapest way to relax them.",
     ),
+    (
+        PRODUCTION,
+        "What did the team's own solver do?",
+        "Means, paired ratios with their interval, and whether a result contradicts a bound that is \
+         proved here.",
+    ),
 ];
+
+/// The study of pasted results: it is made of all instances at once.
+pub(crate) const PRODUCTION: &str = "production";
+/// Studies whose one answer speaks of all instances together.
+pub(crate) const OVER_ALL: [&str; 2] = ["growth", "variability"];
+/// Its field of pasted text.
+const TABLE: &str = "table";
 
 /// What a study gave.
 #[derive(Debug, Clone, PartialEq)]
 pub(crate) struct Found {
     /// The scenario that it was made of.
     pub(crate) of: Rc<str>,
+    /// Instance by instance.
+    pub(crate) parts: Vec<Part>,
+    /// Instances that were asked for and not come to, since it was stopped.
+    pub(crate) left: usize,
+}
+
+/// What a study gave on one instance.
+#[derive(Debug, Clone, PartialEq)]
+pub(crate) struct Part {
+    /// The instance's name on record; empty where there is one.
+    pub(crate) instance: String,
     /// Its reports, or why there are none.
     pub(crate) reports: Result<Vec<Report>, String>,
+}
+
+/// Instances that a study is asked of.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Of {
+    /// The one that is chosen.
+    Chosen,
+    /// All of the scenario.
+    All,
 }
 
 /// All that was found, and what is being done.
@@ -163,8 +197,9 @@ pub(crate) fn on_record(
     let mut studies = Vec::new();
     for (kind, ..) in KINDS {
         let found = shelf.found.get(kind).filter(|found| *found.of == *scenario_of(document, kind));
-        if let Some(Ok(reports)) = found.map(|found| &found.reports) {
-            studies.extend(reports.iter().map(|report| (String::new(), report.clone())));
+        for part in found.iter().flat_map(|found| &found.parts) {
+            let reports = part.reports.iter().flatten();
+            studies.extend(reports.map(|report| (part.instance.clone(), report.clone())));
         }
     }
     let scenario = document.scenario();
@@ -200,12 +235,48 @@ impl Document {
         rest.studies.push(Study { kind: kind.to_owned(), fields: BTreeMap::new() });
         self.rest = crate::state::pointer::Shared::new(rest);
     }
+
+    /// The pasted results of the team's own solver.
+    pub(crate) fn table(&self) -> &str {
+        let study = self.rest.studies.iter().find(|study| study.kind == PRODUCTION);
+        match study.and_then(|study| study.fields.get(TABLE)) {
+            Some(Field::Text(text)) => text,
+            _ => "",
+        }
+    }
+
+    /// Other results are pasted; without any there is no such study.
+    pub(crate) fn with_table(&mut self, text: String) {
+        let mut rest = (*self.rest).clone();
+        rest.studies.retain(|study| study.kind != PRODUCTION);
+        if !text.trim().is_empty() {
+            let fields = BTreeMap::from([(TABLE.to_owned(), Field::Text(text))]);
+            rest.studies.push(Study { kind: PRODUCTION.to_owned(), fields });
+        }
+        self.rest = crate::state::pointer::Shared::new(rest);
+    }
+
+    /// The instances that a study is asked of, by place, each with its name on record; the first alone,
+    /// without a name, of a study that speaks of all together.
+    pub(crate) fn asked(&self, kind: &str, of: Of) -> Vec<(usize, String)> {
+        if OVER_ALL.contains(&kind) {
+            return vec![(0, String::new())];
+        }
+        let all = self.instances();
+        let alone = all.len() == 1;
+        let named = all.iter().enumerate().map(|(place, text)| {
+            (place, if alone { String::new() } else { name_on_record(text, place) })
+        });
+        named.filter(|(place, _)| of == Of::All || *place == self.chosen).collect()
+    }
 }
 
 #[cfg(test)]
 mod tests {
     use super::*;
     use crate::demo::demo;
+    use crate::state::document::DocumentAction;
+    use crate::state::instances::InstanceEdit;
 
     #[test]
     fn a_study_is_made_of_what_counts_alone() {
@@ -227,8 +298,12 @@ mod tests {
         let left =
             |why: &str| Ok(vec![Report::Left { kind: "order".to_owned(), why: why.to_owned() }]);
         let now = scenario_of(&document, "order");
-        shelf.found.insert("order", Rc::new(Found { of: now.into(), reports: left("fresh") }));
-        shelf.found.insert("ladder", Rc::new(Found { of: "".into(), reports: left("stale") }));
+        let found = |of: &str, reports| {
+            let part = Part { instance: String::new(), reports };
+            Rc::new(Found { of: of.into(), parts: vec![part], left: 0 })
+        };
+        shelf.found.insert("order", found(&now, left("fresh")));
+        shelf.found.insert("ladder", found("", left("stale")));
         let text = on_record(&document, &[], &shelf, false);
         assert!(text.contains("left out: fresh") && !text.contains("stale"), "{text}");
         assert!(text.contains("- B: ") && text.contains("#s1."), "{text}");
@@ -236,9 +311,38 @@ mod tests {
     }
 
     #[test]
+    fn a_pasted_table_is_a_study_of_the_scenario_and_an_empty_one_is_none() {
+        let mut document = Document::open(demo());
+        assert_eq!(document.table(), "");
+        let pasted = "instance\trival\tnodes\nMonday\tA\t7\n";
+        document.with_table(pasted.to_owned());
+        assert_eq!(document.table(), pasted);
+        let again = file::parse(&scenario_of(&document, PRODUCTION)).scenario.unwrap();
+        assert_eq!(Document::open(again).table(), pasted, "a file keeps its tabs");
+        document.with_table(" \n".to_owned());
+        assert!(document.scenario().studies.iter().all(|study| study.kind != PRODUCTION));
+    }
+
+    #[test]
+    fn a_study_is_asked_of_the_chosen_instance_or_of_all() {
+        let document = Rc::new(Document::open(demo()));
+        assert_eq!(document.asked("ladder", Of::All), [(0, String::new())]);
+        let two = document.reduce(DocumentAction::Instances(InstanceEdit::Add));
+        let names =
+            |of| two.asked("ladder", of).into_iter().map(|(place, _)| place).collect::<Vec<_>>();
+        assert_eq!((names(Of::Chosen), names(Of::All)), (vec![1], vec![0, 1]));
+        assert_eq!(
+            two.asked("growth", Of::Chosen),
+            [(0, String::new())],
+            "it goes over all by itself"
+        );
+        assert!(two.asked("ladder", Of::All).iter().all(|(_, name)| !name.is_empty()));
+    }
+
+    #[test]
     fn what_ends_is_kept_under_its_kind() {
         let mut shelf = Rc::new(Shelf::default());
-        let found = || Found { of: "".into(), reports: Ok(Vec::new()) };
+        let found = || Found { of: "".into(), parts: Vec::new(), left: 0 };
         for action in [
             ShelfAction::Begun("order"),
             ShelfAction::Doing("row 1".to_owned()),

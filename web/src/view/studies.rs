@@ -3,7 +3,7 @@
 use record::pack::Pack;
 use record::study::Report;
 use report::certificate;
-use report::study::{Figure, Section, Table, derived, overview, sections};
+use report::study::{derived, overview, sections};
 use yew::prelude::*;
 
 use crate::browser::share::download;
@@ -12,8 +12,12 @@ use crate::state::board::Board;
 use crate::state::document::{Document, DocumentAction};
 use crate::state::same::results as results_of;
 use crate::state::share::file_of;
-use crate::state::studies::{Found as Answer, KINDS, Shelf, on_record, scenario_of};
+use crate::state::studies::{
+    Found as Answer, KINDS, OVER_ALL, Of, PRODUCTION, Part, Shelf, on_record, scenario_of,
+};
+use crate::view::finding::{section, sections_of};
 use crate::view::hands::use_hands;
+use crate::view::production::Pasted;
 
 #[derive(Properties, PartialEq, Clone)]
 pub(crate) struct StudiesProps {
@@ -31,26 +35,29 @@ pub(crate) fn Studies(props: &StudiesProps) -> Html {
     if document.slots.is_empty() {
         return Html::default();
     }
+    let begin = {
+        let (document, studying, shelf) = (document.clone(), studying.clone(), shelf.clone());
+        Callback::from(move |(kind, of): (&'static str, Of)| {
+            if is_running(&shelf, kind) {
+                return studying.stop();
+            }
+            if !is_ready(&document, kind) {
+                return;
+            }
+            if let Some(hands) = &hands {
+                hands.document.dispatch(DocumentAction::Study(kind));
+            }
+            studying.begin(kind, scenario_of(&document, kind), document.asked(kind, of));
+        })
+    };
     html! {
         <>
         for (kind, question, how) in KINDS {
             <div class="study" key={kind} data-study={kind}>
-                { head(document, &shelf, kind, question, {
-                    let (document, studying, hands) = (document.clone(), (*studying).clone(), hands.clone());
-                    let (running, ready) = (is_running(&shelf, kind), is_ready(&document));
-                    Callback::from(move |_: MouseEvent| {
-                        if running {
-                            return studying.stop();
-                        }
-                        if !ready {
-                            return;
-                        }
-                        if let Some(hands) = &hands {
-                            hands.document.dispatch(DocumentAction::Study(kind));
-                        }
-                        studying.begin(kind, scenario_of(&document, kind), document.chosen);
-                    })
-                }) }
+                { head(document, &shelf, (kind, question), &begin) }
+                if kind == PRODUCTION {
+                    <Pasted text={document.table().to_owned()} />
+                }
                 { body(document, &shelf, kind, how) }
             </div>
         }
@@ -98,35 +105,49 @@ fn decision_record(props: &StudiesProps, shelf: &Shelf) -> Html {
     }
 }
 
-/// Whether there is something to run rivals on; rivals in MPS need no instance.
-fn is_ready(document: &Document) -> bool {
-    document.accepted.is_some() || document.draft.text.is_empty()
+/// Whether there is something to run rivals on, or a table of results; rivals in MPS need no instance.
+fn is_ready(document: &Document, kind: &str) -> bool {
+    let pasted = kind != PRODUCTION || !document.table().trim().is_empty();
+    pasted && (document.accepted.is_some() || document.draft.text.is_empty())
 }
 
 fn is_running(shelf: &Shelf, kind: &str) -> bool {
     shelf.running.as_ref().is_some_and(|(running, _)| *running == kind)
 }
 
+/// The question, and the buttons that ask it: of the chosen instance and, where there are several, of
+/// all. Pasted results, and studies that speak of all together, are made over all in any case.
 fn head(
     document: &Document,
     shelf: &Shelf,
-    kind: &'static str,
-    question: &str,
-    onclick: Callback<MouseEvent>,
+    (kind, question): (&'static str, &str),
+    begin: &Callback<(&'static str, Of)>,
 ) -> Html {
-    let words = if is_running(shelf, kind) {
+    let running = is_running(shelf, kind);
+    let words = if running {
         "Stop"
     } else if shelf.found.contains_key(kind) {
         "Ask again"
     } else {
         "Ask"
     };
-    let ready = is_ready(document);
+    let several = document.others.len() + 1;
+    let first = if kind == PRODUCTION { Of::All } else { Of::Chosen };
+    let disabled = (!running && !is_ready(document, kind)).to_string();
+    let all = format!("{words} of all {several} instances");
     html! {
         <div class="heading">
             <h3>{ question }</h3>
-            <button type="button" data-testid={format!("study-{kind}")} aria-disabled={(!ready).to_string()}
-                aria-label={format!("{words}: {question}")} {onclick}>{ words }</button>
+            <span class="acts">
+                <button type="button" data-testid={format!("study-{kind}")} aria-disabled={disabled.clone()}
+                    aria-label={format!("{words}: {question}")} onclick={begin.reform(move |_: MouseEvent| (kind, first))}
+                >{ words }</button>
+                if several > 1 && kind != PRODUCTION && !OVER_ALL.contains(&kind) && !running {
+                    <button type="button" data-testid={format!("study-{kind}-all")} aria-disabled={disabled}
+                        aria-label={format!("{all}: {question}")} onclick={begin.reform(move |_: MouseEvent| (kind, Of::All))}
+                    >{ all.clone() }</button>
+                }
+            </span>
         </div>
     }
 }
@@ -144,14 +165,63 @@ fn body(document: &Document, shelf: &Shelf, kind: &'static str, how: &str) -> Ht
             if stale {
                 <p class="warn">{ "Rivals, instance or settings have changed since: ask again." }</p>
             }
-            { results(found) }
-            { handed(document, found) }
+            { parts(document, kind, found) }
+            if found.left > 0 {
+                <p class="warn" data-testid="study-left">{
+                    format!("Stopped: {} of {} instances were not come to.", found.left, found.left + found.parts.len())
+                }</p>
+            }
         </>
     }
 }
 
-fn results(found: &Answer) -> Html {
-    match &found.reports {
+/// The answer, instance by instance; several are folded to a line each, but for pasted results, whose
+/// first part speaks of all.
+fn parts(document: &Document, kind: &str, found: &Answer) -> Html {
+    if kind == PRODUCTION {
+        return found.parts.iter().map(results).collect();
+    }
+    if let [part] = found.parts.as_slice() {
+        return html! {
+            <>
+                if !part.instance.is_empty() {
+                    <p class="soft">{ format!("Of {}.", part.instance) }</p>
+                }
+                { results(part) }
+                { handed(document, part) }
+            </>
+        };
+    }
+    let folded = found.parts.iter().map(|part| {
+        html! {
+            <details class="folded part" key={part.instance.clone()} data-testid="study-part">
+                <summary><b>{ part.instance.clone() }</b>{ " – " }{ in_short(part) }</summary>
+                { results(part) }
+                { handed(document, part) }
+            </details>
+        }
+    });
+    folded.collect()
+}
+
+/// The first sentence of an answer.
+fn in_short(part: &Part) -> String {
+    let Ok(reports) = &part.reports else { return "it could not be made".to_owned() };
+    let all: Vec<&Report> = reports.iter().collect();
+    let over = overview(&all).into_iter().chain(reports.iter().flat_map(sections));
+    let said = over.into_iter().find_map(|section| {
+        let first = section.verdict.into_iter().next()?;
+        Some(if section.heading.is_empty() {
+            first
+        } else {
+            format!("{}: {first}", section.heading)
+        })
+    });
+    said.unwrap_or_else(|| "see the table".to_owned())
+}
+
+fn results(part: &Part) -> Html {
+    match &part.reports {
         Err(why) => html! { <p class="warn">{ format!("It could not be made: {why}.") }</p> },
         Ok(reports) => {
             let all: Vec<&Report> = reports.iter().collect();
@@ -162,8 +232,8 @@ fn results(found: &Answer) -> Html {
 }
 
 /// What is kept of an answer: models that came out of it as rivals, certificates as a file.
-fn handed(document: &Document, found: &Answer) -> Html {
-    let Ok(reports) = &found.reports else { return Html::default() };
+fn handed(document: &Document, part: &Part) -> Html {
+    let Ok(reports) = &part.reports else { return Html::default() };
     let proofs = certificate::json(reports).map(|text| {
         let name = file_of(&document.title, "certificates.json");
         let onclick = Callback::from(move |_: MouseEvent| download(&name, text.as_str()));
@@ -196,77 +266,4 @@ fn Derived(props: &DerivedProps) -> Html {
         }
     });
     html! { <button type="button" data-testid="derived" {onclick}>{ props.words.clone() }</button> }
-}
-
-fn sections_of(report: &Report) -> Vec<Html> {
-    sections(report).iter().map(section).collect()
-}
-
-fn section(section: &Section) -> Html {
-    html! {
-        <div class="finding">
-            <h4>{ section.heading.clone() }</h4>
-            for sentence in &section.verdict {
-                <p class="prose">{ sentence.clone() }</p>
-            }
-            if let Some(figure) = &section.figure {
-                <div class="scroll">{ drawn(figure) }</div>
-            }
-            if let Some(found) = &section.table {
-                <div class="scroll" tabindex="0" role="region" aria-label={section.heading.clone()}>
-                    { table(found) }
-                </div>
-            }
-            for sentence in &section.notes {
-                <p class="prose soft">{ sentence.clone() }</p>
-            }
-        </div>
-    }
-}
-
-/// The order of the rivals; it is told in words above it. Attributes, not styles: the page's policy
-/// refuses styles that stand in an element.
-fn drawn(figure: &Figure) -> Html {
-    let (width, height) = figure.size;
-    html! {
-        <svg role="img" aria-label={figure.label.clone()} viewBox={format!("0 0 {width} {height}")}
-            width={width.to_string()} height={height.to_string()} fill="currentColor">
-            for ([x1, y1, x2, y2], dashes) in &figure.lines {
-                <line x1={x1.to_string()} y1={y1.to_string()} x2={x2.to_string()} y2={y2.to_string()}
-                    stroke="currentColor" stroke-dasharray={*dashes} />
-            }
-            for (x, y, word) in &figure.words {
-                <text x={x.to_string()} y={y.to_string()} font-style="italic">{ word.clone() }</text>
-            }
-            for (x, y, name) in &figure.names {
-                <text x={x.to_string()} y={y.to_string()} font-weight="600" text-anchor="middle">{ name.clone() }</text>
-            }
-        </svg>
-    }
-}
-
-fn table(table: &Table) -> Html {
-    let class = |column: usize| table.words.contains(&column).then_some("word");
-    html! {
-        <table>
-            <thead><tr>
-                for (column, head) in table.head.iter().enumerate() {
-                    <th scope="col" class={class(column)}>{ head.clone() }</th>
-                }
-            </tr></thead>
-            <tbody>
-                for row in &table.rows {
-                    <tr>
-                        for (column, cell) in row.iter().enumerate() {
-                            if column == 0 {
-                                <th scope="row">{ cell.clone() }</th>
-                            } else {
-                                <td class={class(column)}>{ cell.clone() }</td>
-                            }
-                        }
-                    </tr>
-                }
-            </tbody>
-        </table>
-    }
 }

@@ -1,9 +1,10 @@
 //! Ways to draw a solution, by the index sets of its variables: pairs of stops are arcs on the
-//! map, one stop is a value written at it, a whole number is a bar over time, starts are a chart of
+//! map, one stop is a value written at it, a whole number is a bar over time, starts and ends are a chart of
 //! machines, weights against a room are bins, what rows join is a graph, other pairs are a grid. Where
 //! nothing else is drawn, other single indices are a grid of one column. What fits none of these is left
 //! to the table of values.
 
+mod ends;
 mod graph;
 mod strips;
 
@@ -12,6 +13,7 @@ use std::collections::{BTreeMap, BTreeSet};
 use model::{ColumnId, FamilyId, LabelId, Model, NumberId, RowId, VariableId};
 use record::message::{Arc, Drawing, Picture};
 
+use self::ends::Ends;
 use self::graph::Graph;
 use self::strips::{Chart, Loads, Pulse};
 use super::tidy;
@@ -41,6 +43,7 @@ enum Way {
     Stops(VariableId, Option<FamilyId>),
     Bars(Vec<VariableId>, Vec<i64>),
     Chart(Chart),
+    Ends(Ends),
     Pulse(Pulse),
     Loads(Loads),
     Graph(Graph),
@@ -97,6 +100,7 @@ impl Drawings {
             (1, true) => vec![Way::Stops(id, self.pairs_of(model, id))],
             _ => {
                 let chart = Chart::new(model, id, length).map(Way::Chart);
+                let chart = chart.or_else(|| Ends::new(model, id, length).map(Way::Ends));
                 let pulse = Pulse::new(model, id, length).map(Way::Pulse);
                 let vertices = Graph::of_vertices(model, id, length).map(Way::Graph);
                 let pairs = if length == 2 { Graph::of_pairs(model, id) } else { None };
@@ -165,6 +169,7 @@ impl Drawings {
                 }
             }
             Way::Chart(chart) => chart.drawing(model, x),
+            Way::Ends(ends) => ends.drawing(model, x),
             Way::Pulse(pulse) => pulse.drawing(model, x),
             Way::Loads(loads) => loads.drawing(model, x),
             Way::Graph(graph) => graph.drawing(model, x),
@@ -226,7 +231,7 @@ fn rank(model: &Model, way: &Way) -> u8 {
             let mut columns = model.variables()[id.index()].columns.clone();
             u8::from(!columns.all(|column| model.columns()[column as usize].integer))
         }
-        Way::Chart(_) | Way::Pulse(_) => 1,
+        Way::Chart(_) | Way::Ends(_) | Way::Pulse(_) => 1,
         Way::Loads(loads) if !loads.is_long(model) => 1,
         Way::Graph(graph) if !graph.is_dense() => 1,
         Way::Stops(..) => 3,

@@ -18,6 +18,7 @@ fn of_rival(rival: &RivalCuts) -> Section {
         notes.push(format!("Nothing is found by {}.", and(&rival.idle)));
     }
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!("General cuts for {}: {}", rival.rival, rival.title),
         verdict: vec![verdict(rival)],

@@ -19,6 +19,7 @@ pub(super) fn section(verdict: &Equivalence) -> Section {
     let mut table = Table::new(&["test", "outcome", "agree"], &[0, 1, 2]);
     table.rows = verdict.evidence.iter().map(row).collect();
     Section {
+        faults: Vec::new(),
         figure: verdict.counterexample.as_ref().and_then(plans::figure),
         heading: format!("Are {a} and {b} the same problem?"),
         verdict: sentences(verdict),

@@ -29,6 +29,7 @@ fn of_rival(rival: &RivalFamilies) -> Section {
         notes.push(format!("No share is given: {}.", rival.no_shapley));
     }
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!("Where the bound of {} comes from: {}", rival.rival, rival.title),
         verdict: verdict(rival),

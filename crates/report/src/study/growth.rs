@@ -41,6 +41,7 @@ fn sizes(growth: &Growth) -> Section {
         notes.push(format!("{} gave no result: no model of that size.", of(failed as u64, "run")));
     }
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!(
             "Growth ({}; at most {}{} a run)",

@@ -40,6 +40,7 @@ fn of_rival(rival: &RivalLadder) -> Section {
         })
         .collect();
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!("Bound ladder of {}: {}", rival.rival, rival.title),
         verdict: best_step(rival).into_iter().collect(),

@@ -18,6 +18,7 @@ fn of_rival(rival: &RivalNumerics) -> Section {
         verdict.push("Nothing in its coefficients is to be worried about.".to_owned());
     }
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!("Coefficients of {}: {}", rival.rival, rival.title),
         verdict,

@@ -22,6 +22,7 @@ pub(super) fn section(order: &Order) -> Section {
         })
         .collect();
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!("Which of {a} and {b} is stronger?"),
         verdict: vec![verdict(order)],

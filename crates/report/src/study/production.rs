@@ -18,7 +18,7 @@ pub(super) fn sections(report: &Production) -> Vec<Section> {
         out.push(rivals(report));
     } else if !report.remarks.is_empty() {
         let heading = "In production".to_owned();
-        return vec![Section { heading, verdict: report.remarks.clone(), ..Section::default() }];
+        return vec![Section { heading, faults: report.remarks.clone(), ..Section::default() }];
     }
     let letters: Vec<&str> = report.means.iter().map(|mean| mean.rival.as_str()).collect();
     if !report.pairs.is_empty() {
@@ -44,14 +44,13 @@ fn rivals(report: &Production) -> Section {
     }
     let mut table = Table::new(&head, &[0]);
     table.rows = report.means.iter().map(|mean| row(mean, timed)).collect();
-    let mut notes = vec![MEANING.to_owned()];
-    notes.extend(report.remarks.iter().cloned());
     Section {
         heading: format!("In production ({})", of(u64::from(report.results), "pasted result")),
+        faults: report.remarks.clone(),
         verdict: report.pairs.iter().map(|pair| verdict(pair, word(report))).collect(),
         figure: None,
         table: Some(table),
-        notes,
+        notes: vec![MEANING.to_owned()],
     }
 }
 

@@ -41,6 +41,7 @@ fn of_rival(rival: &RivalSymmetry) -> Section {
         row("orbits of the verified symmetries", rival.orbits),
     ];
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!("What {} does not tell apart: {}", rival.rival, rival.title),
         verdict,

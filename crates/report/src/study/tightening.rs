@@ -34,7 +34,7 @@ fn of_rival(rival: &RivalTightening) -> Section {
         ));
     }
     let verdict = std::iter::once(verdict(rival)).chain(beside(rival)).collect();
-    Section { heading, verdict, figure: None, table: Some(table), notes }
+    Section { heading, verdict, table: Some(table), notes, ..Section::default() }
 }
 
 /// What smaller coefficients do to their range, and what the cut-off adds.

@@ -22,6 +22,7 @@ fn orders(report: &Variability) -> Section {
     let runs = (report.orders + 1) * report.instances.max(1);
     verdict.extend(report.pairs.iter().map(|pair| paired(pair, runs)));
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!(
             "How much chance is in a search? ({} of rows and columns, at most {} a run)",
@@ -115,6 +116,7 @@ fn roots(report: &Variability) -> Section {
         table.rows.push(row);
     }
     Section {
+        faults: Vec::new(),
         figure: None,
         heading: format!(
             "Does the root matter? The results are for {} = {}",

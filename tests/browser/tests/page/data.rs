@@ -32,7 +32,7 @@ Ashford\tBarrow\t24
 Birchley\tAbbey\t92
 ";
 
-const TWO: &str = "hullward = 1
+pub(crate) const TWO: &str = "hullward = 1
 title = \"Two days\"
 
 [[instance]]

@@ -8,8 +8,10 @@ use record::message::{Arc, Drawing, Picture, Vertex};
 
 use super::{ZERO, name_of, values};
 
-/// Vertices drawn at most.
+/// Vertices drawn at most; of more, those where values are not whole come first.
 const VERTICES: usize = 80;
+/// A graph of more vertices is not drawn.
+const MOST: usize = 5_000;
 /// Edges between vertices that can still be told apart.
 const CROWD: usize = 300;
 /// A row of more entries joins no pairs.
@@ -107,8 +109,11 @@ impl Graph {
     pub(super) fn drawing(&self, model: &Model, x: &[f64]) -> Drawing {
         let stands =
             if self.over == Over::Pairs { "on the graph" } else { "at the nodes of the graph" };
-        let name = format!("{} {stands}", name_of(model, self.variable));
-        Drawing { name, picture: self.picture(model, x) }
+        let all = self.vertices.len();
+        let part =
+            if all > VERTICES { format!(", {VERTICES} of {all} nodes") } else { String::new() };
+        let name = format!("{} {stands}{part}", name_of(model, self.variable));
+        Drawing { name, picture: few(self.picture(model, x)) }
     }
 
     fn picture(&self, model: &Model, x: &[f64]) -> Picture {
@@ -150,6 +155,70 @@ impl Graph {
     }
 }
 
+/// At most [`VERTICES`] of a graph: those where a value is not whole come first, then those where it is
+/// not 0, then those beside them.
+fn few(picture: Picture) -> Picture {
+    let Picture::Graph { vertices, edges, arcs } = picture else { return picture };
+    if vertices.len() <= VERTICES {
+        return Picture::Graph { vertices, edges, arcs };
+    }
+    let mut keys = vec![3_u8; vertices.len()];
+    let mut touch = |place: u32, key: u8| {
+        if let Some(known) = keys.get_mut(place as usize)
+            && key < *known
+        {
+            *known = key;
+        }
+    };
+    let key = |value: f64| match (value.abs() > ZERO, (value - value.round()).abs() > ZERO) {
+        (_, true) => 0,
+        (true, _) => 1,
+        _ => 3,
+    };
+    for (vertex, place) in vertices.iter().zip(0..) {
+        touch(place, vertex.value.map_or(3, key));
+    }
+    for arc in &arcs {
+        touch(arc.from, key(arc.value));
+        touch(arc.to, key(arc.value));
+    }
+    let held = keys.clone();
+    let is_held = |place: u32| held.get(place as usize).is_some_and(|key| *key < 2);
+    for &(one, other) in &edges {
+        for (near, place) in [(one, other), (other, one)] {
+            if is_held(near) && keys[place as usize] > 2 {
+                keys[place as usize] = 2;
+            }
+        }
+    }
+    chosen(vertices, (edges, arcs), &keys)
+}
+
+/// The vertices of the least keys, in their own order, with what joins them.
+fn chosen(
+    vertices: Vec<Vertex>,
+    (mut edges, mut arcs): (Vec<(u32, u32)>, Vec<Arc>),
+    keys: &[u8],
+) -> Picture {
+    let mut order: Vec<usize> = (0..vertices.len()).collect();
+    order.sort_by_key(|&place| keys[place]);
+    order.truncate(VERTICES);
+    order.sort_unstable();
+    let places: BTreeMap<u32, u32> = order
+        .iter()
+        .zip(0..)
+        .filter_map(|(&old, new)| Some((u32::try_from(old).ok()?, new)))
+        .collect();
+    let pair = |from: u32, to: u32| Some((*places.get(&from)?, *places.get(&to)?));
+    edges = edges.into_iter().filter_map(|(from, to)| pair(from, to)).collect();
+    arcs = arcs
+        .into_iter()
+        .filter_map(|arc| pair(arc.from, arc.to).map(|(from, to)| Arc { from, to, ..arc }))
+        .collect();
+    let kept = vertices.into_iter().zip(0..).filter(|(_, place)| places.contains_key(place));
+    Picture::Graph { vertices: kept.map(|(vertex, _)| vertex).collect(), edges, arcs }
+}
+
 /// Whether labels are not all whole numbers: periods and ranks are no vertices.
 fn named(model: &Model, labels: &[LabelId]) -> bool {
     labels.iter().any(|&label| model.labels().name(label).parse::<i64>().is_err())
@@ -159,7 +228,7 @@ fn named(model: &Model, labels: &[LabelId]) -> bool {
 fn distinct(labels: impl Iterator<Item = LabelId>) -> Option<Vec<LabelId>> {
     let mut seen = BTreeSet::new();
     let labels: Vec<LabelId> = labels.filter(|label| seen.insert(*label)).collect();
-    (labels.len() <= VERTICES).then_some(labels)
+    (labels.len() <= MOST).then_some(labels)
 }
 
 /// The columns of a variable that a row holds with ones: two and perhaps one more column, or a few

@@ -16,7 +16,7 @@ use super::{ZERO, name_of, values};
 const STRIPS: usize = 80;
 /// Rooms that are seen at a glance.
 const FEW: usize = 24;
-const PARTS: usize = 4_000;
+pub(super) const PARTS: usize = 4_000;
 
 /// How a variable of starts is drawn.
 #[derive(Debug, Clone)]
@@ -29,7 +29,7 @@ pub(super) struct Chart {
 }
 
 /// A row as `terms ≥ side`, when it has but one side.
-fn at_least(model: &Model, row: RowId) -> Option<(f64, f64)> {
+pub(super) fn at_least(model: &Model, row: RowId) -> Option<(f64, f64)> {
     let float = |id| model.numbers().float(id);
     match model.row_sides(row) {
         (Some(lower), None) => Some((1.0, float(lower))),
@@ -75,14 +75,20 @@ impl Chart {
 
 /// Strips that are filled part by part.
 #[derive(Default)]
-struct Stacked {
+pub(super) struct Stacked {
     strips: Vec<Strip>,
     places: BTreeMap<Vec<LabelId>, usize>,
 }
 
 impl Stacked {
     /// Puts a part into the strip of one of its labels, or into one of its own, and names both.
-    fn add(&mut self, model: &Model, tuple: &[LabelId], lane: Option<usize>, part: &Part) {
+    pub(super) fn add(
+        &mut self,
+        model: &Model,
+        tuple: &[LabelId],
+        lane: Option<usize>,
+        part: &Part,
+    ) {
         let label = |label: &LabelId| model.labels().name(*label).to_owned();
         let named: Vec<LabelId> = match lane {
             Some(place) => tuple.get(place).copied().into_iter().collect(),
@@ -99,7 +105,8 @@ impl Stacked {
         self.strips[place].parts.push(Part { name: rest.join(", "), ..part.clone() });
     }
 
-    fn drawing(mut self, variable: &str) -> Drawing {
+    /// The chart of a variable.
+    pub(super) fn drawing(mut self, variable: &str) -> Drawing {
         let all = self.strips.len();
         self.strips.truncate(STRIPS);
         let part =

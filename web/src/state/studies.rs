@@ -8,6 +8,7 @@ use record::results::RivalResult;
 use record::scenario::{Field, Scenario, Study};
 use record::study::Report;
 use report::decision::{self, Evidence};
+use report::study::over_instances;
 use yew::Reducible;
 
 use crate::state::document::Document;
@@ -100,6 +101,21 @@ pub(crate) struct Found {
     pub(crate) parts: Vec<Part>,
     /// Instances that were asked for and not come to, since it was stopped.
     pub(crate) left: usize,
+}
+
+impl Found {
+    /// Its reports, each with its instance's name on record.
+    fn named(&self) -> impl Iterator<Item = (String, Report)> + '_ {
+        self.parts.iter().flat_map(|part| {
+            let reports = part.reports.iter().flatten();
+            reports.map(|report| (part.instance.clone(), report.clone()))
+        })
+    }
+
+    /// What the answers on several instances come to together.
+    pub(crate) fn over(&self) -> Vec<Report> {
+        over_instances(&self.named().collect::<Vec<_>>())
+    }
 }
 
 /// What a study gave on one instance.
@@ -197,11 +213,10 @@ pub(crate) fn on_record(
     let mut studies = Vec::new();
     for (kind, ..) in KINDS {
         let found = shelf.found.get(kind).filter(|found| *found.of == *scenario_of(document, kind));
-        for part in found.iter().flat_map(|found| &found.parts) {
-            let reports = part.reports.iter().flatten();
-            studies.extend(reports.map(|report| (part.instance.clone(), report.clone())));
-        }
+        studies.extend(found.iter().flat_map(|found| found.named()));
     }
+    let over = over_instances(&studies);
+    studies.extend(over.into_iter().map(|report| (String::new(), report)));
     let scenario = document.scenario();
     let texts = scenario.rivals.iter().map(|rival| {
         let shipped = document.entry(rival).map(|entry| entry.text.clone());
@@ -308,6 +323,28 @@ mod tests {
         assert!(text.contains("left out: fresh") && !text.contains("stale"), "{text}");
         assert!(text.contains("- B: ") && text.contains("#s1."), "{text}");
         assert!(on_record(&document, &[], &shelf, true).starts_with("<!doctype html>"));
+    }
+
+    #[test]
+    fn orders_on_several_instances_are_summed_up_on_the_page_and_in_the_record() {
+        use record::study::{Order, OrderLevel, Relation};
+        let document = Document::open(demo());
+        let rivals = ["A".to_owned(), "B".to_owned()];
+        let (relation, level) = (Relation::NeverWeaker, OrderLevel::Observed);
+        let order = Order { rivals, relation, level, ..Order::default() };
+        let part = |day: &str| Part {
+            instance: day.to_owned(),
+            reports: Ok(vec![Report::Order(Box::new(order.clone()))]),
+        };
+        let of: Rc<str> = scenario_of(&document, "order").into();
+        let found = Found { of, parts: vec![part("Monday"), part("Tuesday")], left: 0 };
+        assert_eq!(found.over().len(), 1);
+        let one = Found { parts: vec![part("Monday")], ..found.clone() };
+        assert_eq!(one.over(), []);
+        let mut shelf = Shelf::default();
+        shelf.found.insert("order", Rc::new(found));
+        let text = on_record(&document, &[], &shelf, false);
+        assert!(text.contains("A stronger on 2 of 2 instances"), "{text}");
     }
 
     #[test]

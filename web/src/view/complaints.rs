@@ -7,7 +7,8 @@ use web_sys::HtmlTextAreaElement;
 use yew::prelude::*;
 
 use crate::state::pointer::Shared;
-use crate::state::words::{advice, sentence};
+use crate::state::words::{advice, sentence, spans};
+use crate::view::guide::said;
 use crate::view::paste::BOX;
 
 /// Complaints shown at once.
@@ -66,11 +67,12 @@ fn one(text: &str, complaint: &Complaint) -> Html {
     let kind = kind(complaint);
     let place = format!("{kind}, line {}, column {}: ", complaint.line, complaint.column);
     let (before, marked, after) = quote(text, complaint);
+    let (message, mend) = (sentence(&complaint.message), advice(&complaint.mend));
     html! {
         <>
             <p>
-                <b>{ place }</b>{ sentence(&complaint.message) }
-                if !complaint.mend.is_empty() { { " " }<span class="mend">{ advice(&complaint.mend) }</span> }
+                <b>{ place }</b>{ for spans(&message).map(said) }
+                if !mend.is_empty() { { " " }<span class="mend">{ for spans(&mend).map(said) }</span> }
                 { " " }<button type="button" class="link" onclick={show}>{ "Show in the text" }</button>
             </p>
             if !(before.is_empty() && marked.is_empty() && after.is_empty()) {

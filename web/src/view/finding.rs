@@ -67,7 +67,11 @@ fn table(table: &Table) -> Html {
         <table>
             <thead><tr>
                 for (column, head) in table.head.iter().enumerate() {
-                    <th scope="col" class={class(column)}>{ head.clone() }</th>
+                    if head.is_empty() {
+                        <td />
+                    } else {
+                        <th scope="col" class={class(column)}>{ head.clone() }</th>
+                    }
                 }
             </tr></thead>
             <tbody>

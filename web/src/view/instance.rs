@@ -45,8 +45,10 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
     let document = &props.document;
     html! {
         <section class="instance" aria-labelledby="instance-heading">
-            <h2 id="instance-heading">{ "Instance" }</h2>
-            <Instances document={document.clone()} />
+            <div class="heading">
+                <h2 id="instance-heading">{ "Instance" }</h2>
+                <Instances document={document.clone()} />
+            </div>
             <div class={classes!("instance-parts", (!is_drawn(document)).then_some("plain"))}>
                 if is_drawn(document) { <Drawing document={document.clone()} /> }
                 <div>

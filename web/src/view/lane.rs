@@ -102,6 +102,7 @@ pub(crate) fn LaneView(props: &LaneProps) -> Html {
                         { change(props.slot.id, &props.letter, hands) }
                     }
                     if props.draft.is_some() { { toggle(props.slot.id, &props.letter, &writing) } }
+                    if let Some(hands) = &hands { { with_the_log(props, hands) } }
                     { take_away(props) }
                 </div>
             </div>
@@ -244,13 +245,23 @@ fn buttons(props: &LaneProps, hands: &Hands) -> Html {
             } else {
                 { button("Stop", phase.can_stop(), act(|hands, at| hands.session.stop(at.lane))) }
             }
-            if over && props.lane.nodes() > 0 {
-                { button("Prove", !props.lane.proving, act(|hands, at| hands.session.prove(at.lane))) }
-            }
-            if matches!(phase, Phase::Done | Phase::Paused) && props.lane.nodes() > 0 {
-                { button("Save log", !props.lane.proving, save_log(props, hands)) }
-            }
         </div>
+    }
+}
+
+/// What may be done with a search that rests: prove it again once it is over, save its log.
+fn with_the_log(props: &LaneProps, hands: &Hands) -> Html {
+    let rests = matches!(props.lane.phase, Phase::Done | Phase::Paused);
+    if !rests || props.lane.nodes() == 0 {
+        return Html::default();
+    }
+    let (id, session) = (props.slot.id, hands.session.clone());
+    let prove = Callback::from(move |_: MouseEvent| session.prove(id));
+    html! {
+        <>
+            if is_over(&props.lane) { { button("Prove", !props.lane.proving, prove) } }
+            { button("Save log", !props.lane.proving, save_log(props, hands)) }
+        </>
     }
 }
 

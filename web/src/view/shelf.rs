@@ -41,7 +41,7 @@ pub(crate) fn Shelf(props: &ShelfProps) -> Html {
         props.catalogue.iter().filter(|entry| entry.holds(&words)).cloned().collect();
     let families = by_family(&found);
     let said = if searched { "with all of these words" } else { "in all" };
-    let count = format!("{}, {said}", of(found.len() as u64, "formulation"));
+    let count = format!("{} {said}", of(found.len() as u64, "formulation"));
     let list = families.iter().map(|(name, entries)| {
         let shown = searched || family.as_deref() == Some(*name);
         let (setter, this) = (family.setter(), (*name).to_owned());

@@ -175,8 +175,8 @@ fn body(document: &Document, shelf: &Shelf, kind: &'static str, how: &str) -> Ht
     }
 }
 
-/// The answer, instance by instance; several are folded to a line each, but for pasted results, whose
-/// first part speaks of all.
+/// The answer, instance by instance; several are folded to a line each below what they come to, but for
+/// pasted results, whose first part speaks of all.
 fn parts(document: &Document, kind: &str, found: &Answer) -> Html {
     if kind == PRODUCTION {
         return found.parts.iter().map(results).collect();
@@ -201,7 +201,7 @@ fn parts(document: &Document, kind: &str, found: &Answer) -> Html {
             </details>
         }
     });
-    folded.collect()
+    html! { <>{ for found.over().iter().flat_map(sections_of) }{ for folded }</> }
 }
 
 /// The first sentence of an answer.

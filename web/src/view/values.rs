@@ -2,7 +2,7 @@
 
 use record::message::{ColumnValue, NodeDetail, RivalReport};
 use record::scenario::{Act, ActKind};
-use report::number::{fixed, full, of, short};
+use report::number::{fixed, full, of};
 use yew::prelude::*;
 
 use crate::state::pointer::Shared;
@@ -98,7 +98,9 @@ fn branch(props: &ValuesProps, value: &ColumnValue, name: &str) -> Html {
 
 /// The expected gains below and above, in short.
 fn gains(value: &ColumnValue) -> String {
-    value.gains.map_or_else(String::new, |(down, up)| format!("{} {}", short(down), short(up)))
+    value
+        .gains
+        .map_or_else(String::new, |(down, up)| format!("{} {}", fixed(down, 2), fixed(up, 2)))
 }
 
 fn row(props: &ValuesProps, value: &ColumnValue, (may_branch, expected): (bool, bool)) -> Html {

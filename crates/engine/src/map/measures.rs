@@ -135,7 +135,11 @@ fn copies(model: &Model, labels: &[LabelId], [idle, branchings]: [String; 2]) ->
 
 /// A count with its thousands apart.
 fn count(value: impl Into<u64>) -> String {
-    let digits = value.into().to_string();
+    grouped(&value.into().to_string())
+}
+
+/// Digits with commas between the thousands.
+fn grouped(digits: &str) -> String {
     let mut text = String::new();
     for (place, digit) in digits.chars().enumerate() {
         if place > 0 && (digits.len() - place) % 3 == 0 {
@@ -151,8 +155,11 @@ fn figure(value: f64) -> String {
     let size = value.abs();
     let digits = [1.0, 10.0, 100.0, 1000.0].iter().filter(|limit| size >= **limit).count();
     let text = format!("{value:.*}", 4_usize.saturating_sub(digits));
-    let trimmed = text.trim_end_matches('0').trim_end_matches('.');
-    if text.contains('.') { trimmed.to_owned() } else { text }
+    let (sign, text) = text.strip_prefix('-').map_or(("", text.as_str()), |text| ("−", text));
+    let (whole, part) = text.split_once('.').unwrap_or((text, ""));
+    let part = part.trim_end_matches('0');
+    let point = if part.is_empty() { "" } else { "." };
+    [sign, &grouped(whole), point, part].concat()
 }
 
 fn percent(share: f64) -> String {
@@ -172,6 +179,6 @@ mod tests {
     #[test]
     fn figures_have_four_digits() {
         let all = [151.2, 1234.5, 0.12345, 12.0, -3.5, 1e7, 0.0].map(figure);
-        assert_eq!(all, ["151.2", "1234", "0.1235", "12", "-3.5", "10000000", "0"]);
+        assert_eq!(all, ["151.2", "1,234", "0.1235", "12", "−3.5", "10,000,000", "0"]);
     }
 }

@@ -3,11 +3,12 @@
 use std::fs;
 
 use hullward_tests_browser::Outcome;
-use hullward_tests_browser::browser::Browser;
+use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::screen::Screen;
 use hullward_tests_browser::visit::{Source, visit};
 
-use crate::lanes::{button, paste, status};
+use crate::data::TWO;
+use crate::lanes::{button, part, paste, paste_long_work, status};
 
 /// The rules of WCAG 2.0 to 2.2, A and AA, and axe-core's own of good practice.
 const RUN: &str = "
@@ -53,6 +54,24 @@ async fn holds(browser: &Browser, axe: &str, state: &str) -> Outcome<()> {
     Ok(())
 }
 
+/// Depots and villages whose headings are nobody's names of data.
+const UNMAPPED: &str = "hullward = 1
+[instance]
+text = '''
+depot\tpermit\trent
+Ashford\t62\t6
+Birchley\t55\t9
+
+depot\tvillage\thaul
+Ashford\tAbbey\t31
+Ashford\tBarrow\t24
+Birchley\tAbbey\t92
+Birchley\tBarrow\t21
+'''
+[[rival]]
+from = \"ufl/split\"
+";
+
 const UNFOLD: &str =
     "document.querySelectorAll('details').forEach((each) => { each.open = true; })";
 
@@ -93,6 +112,103 @@ async fn wcag_is_kept_with_errors_and_with_an_infeasible_rival() -> Outcome<()> 
         paste(browser, include_str!("../../fixtures/no-round.toml")).await?;
         browser.shows("no plan").await?;
         holds(browser, &axe, "no plan").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn wcag_is_kept_while_rivals_run_and_at_a_node_of_a_paused_search() -> Outcome<()> {
+    let Some(axe) = axe()? else { return Ok(()) };
+    visit(Source::File, async |browser| {
+        paste_long_work(browser).await?;
+        button(browser, "A", "run").await?.click().await?;
+        status(browser, "A", "searching").await?;
+        holds(browser, &axe, "a search that runs").await?;
+        button(browser, "A", "pause").await?.click().await?;
+        status(browser, "A", "paused").await?;
+        let open = "document.querySelectorAll('[data-lane=A] details').forEach((each) => { each.open = true; })";
+        browser.script(open).await?;
+        let choose = "document.querySelectorAll('[data-lane=A] .item')[3].click()";
+        browser.until("the nodes are listed", SOON, async || Ok(browser.script(choose).await.is_ok())).await?;
+        browser.select("[data-testid=inspector] table").await?;
+        browser.script(UNFOLD).await?;
+        holds(browser, &axe, "a node that is looked at").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn wcag_is_kept_where_one_writes_a_rival_and_makes_mistakes() -> Outcome<()> {
+    let Some(axe) = axe()? else { return Ok(()) };
+    visit(Source::File, async |browser| {
+        status(browser, "C", "root solved").await?;
+        button(browser, "A", "notation").await?.click().await?;
+        holds(browser, &axe, "a formulation that is read").await?;
+        button(browser, "A", "edit").await?.click().await?;
+        let field = browser.select(&part("A", "notation-text")).await?;
+        let sound = field.prop("value").await?.unwrap_or_default();
+        browser.paste(&field, &sound.replace("c_{i,j} x_{i,j}", "c_{i,j} y_{i,j}")).await?;
+        button(browser, "A", "mend").await?;
+        holds(browser, &axe, "an error in the notation").await?;
+        button(browser, "A", "help").await?.click().await?;
+        browser.select("[data-testid=guide] textarea").await?;
+        holds(browser, &axe, "help on the notation").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn wcag_is_kept_in_the_catalogue_at_an_entry() -> Outcome<()> {
+    let Some(axe) = axe()? else { return Ok(()) };
+    visit(Source::File, async |browser| {
+        status(browser, "C", "root solved").await?;
+        browser.still("[data-testid=browse]").await?.click().await?;
+        let search = browser.select("[data-testid=search]").await?;
+        browser.paste(&search, "desrochers lifted round trip").await?;
+        browser.find("button", "Lifted position labels").await?.click().await?;
+        browser.select("[data-testid=entry] [data-testid=typeset]").await?;
+        holds(browser, &axe, "an entry of the catalogue").await
+    })
+    .await
+}
+
+/// Two instances with a broken plan of results, studies of both, and the names of data to be mapped.
+#[tokio::test(flavor = "multi_thread")]
+async fn wcag_is_kept_with_several_instances_and_their_studies() -> Outcome<()> {
+    let Some(axe) = axe()? else { return Ok(()) };
+    visit(Source::File, async |browser| {
+        paste(browser, TWO).await?;
+        status(browser, "B", "root solved").await?;
+        let there = async |words: &str| {
+            let what = format!("{words} is shown");
+            let shown = async || Ok(browser.text().await?.contains(words));
+            browser.until(&what, 4 * SOON, shown).await
+        };
+        browser.still("[data-testid=study-ladder-all]").await?.click().await?;
+        there("Tuesday – ").await?;
+        let table = browser.select("[data-testid=production-text]").await?;
+        browser
+            .paste(
+                &table,
+                "instance\trival\tbound\tplan\tnodes\ttime\nMonday\tA\t10\t10\t7\tsoon\n",
+            )
+            .await?;
+        browser.still("[data-testid=study-production]").await?.click().await?;
+        there("soon").await?;
+        browser.script(UNFOLD).await?;
+        holds(browser, &axe, "studies of two instances").await
+    })
+    .await
+}
+
+#[tokio::test(flavor = "multi_thread")]
+async fn wcag_is_kept_where_names_of_data_are_mapped() -> Outcome<()> {
+    let Some(axe) = axe()? else { return Ok(()) };
+    visit(Source::File, async |browser| {
+        paste(browser, UNMAPPED).await?;
+        browser.shows("depot is a set of 2 labels").await?;
+        browser.select("[data-testid=bindings] select").await?;
+        holds(browser, &axe, "names to be mapped").await
     })
     .await
 }

@@ -84,3 +84,26 @@ async fn results_of_the_teams_own_solver_are_pasted_and_summed_up() -> Outcome<(
     })
     .await
 }
+
+/// A flow whose capacities are left out is the assignment alone, of which no theorem of the catalogue
+/// speaks under that name.
+#[tokio::test(flavor = "multi_thread")]
+async fn the_order_on_all_instances_is_summed_up_above_each() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        let rivals = TWO.replace(
+            "from = \"atsp/subtours\"\n",
+            "from = \"atsp/one-commodity\"\nfamilies = { capacity = \"out\" }\n",
+        );
+        paste(browser, &rivals).await?;
+        browser.shows("3 stops, 6 drives").await?;
+        status(browser, "B", "root solved").await?;
+        browser.still("[data-testid=study-order-all]").await?.click().await?;
+        let said = answered(browser, "order", "of 2 instances").await?;
+        let table =
+            "return [...document.querySelectorAll('[data-study=order] > .finding tbody th')]
+            .map((head) => head.textContent)";
+        assert_eq!(browser.script(table).await?, json!(["Monday", "Tuesday"]), "{said}");
+        Ok(())
+    })
+    .await
+}

@@ -72,7 +72,7 @@ fn words(link: Result<&String, &record::link::LinkError>) -> Html {
     let length = link.chars().count();
     html! {
         <>
-            <p>{ "The link holds your distances; whoever has it can read them." }</p>
+            <p>{ "The link holds your data; whoever has it can read them." }</p>
             if link.starts_with("file:") {
                 <p class="soft">{ "This page is a file on your disk: elsewhere the link opens once its part from # on is put behind the address of a copy of the page." }</p>
             }

@@ -57,7 +57,7 @@ fn taken(scenario: &Scenario, instance: &InstanceText, out: &mut dyn Write) -> R
     worker.handle(Request::Bind(Box::new(job)));
     while worker.advance(engine::native::USUAL_SLICE) {}
     for envelope in worker.take() {
-        let Reply::Bound(lines) = envelope.reply else { continue };
+        let Reply::Bound(lines, _) = envelope.reply else { continue };
         for line in
             lines.iter().filter(|line| line.found != FoundBy::Name || !line.problem.is_empty())
         {

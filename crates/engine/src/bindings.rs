@@ -1,26 +1,30 @@
 //! Which data the rivals take from an instance, one line for each name that they use.
 
+use std::collections::BTreeSet;
+
+use instance::Instance;
 use notation::{Diagnostic, Found, Match};
-use record::message::{BindJob, Binding, BindingOffer, FoundBy};
-use record::scenario::letter;
+use record::message::{BindJob, Binding, BindingOffer, FoundBy, Suit};
+use record::scenario::{InstanceText, letter};
 
 use crate::load::formulation;
 use crate::readings::Readings;
 
 /// The bindings of all rivals in journal notation whose text is sound; none where the instance
-/// cannot be read, which is complained of elsewhere.
-pub(crate) fn bindings(job: &BindJob, readings: &mut Readings) -> Vec<Binding> {
-    let Ok(reading) = readings.read(&job.instance) else { return Vec::new() };
-    let Some(instance) = &reading.instance else { return Vec::new() };
+/// cannot be read, which is complained of elsewhere. Where no rival finds all of its data, the families
+/// that do.
+pub(crate) fn bindings(job: &BindJob, readings: &mut Readings) -> (Vec<Binding>, Vec<Suit>) {
+    let none = || (Vec::new(), Vec::new());
+    let Ok(reading) = readings.read(&job.instance) else { return none() };
+    let Some(instance) = &reading.instance else { return none() };
     let mut bindings: Vec<Binding> = Vec::new();
+    let (mut asked, mut found) = (0, 0);
     for (place, rival) in job.rivals.iter().enumerate() {
         let Ok((text, _)) = formulation(rival) else { continue };
-        let parse = notation::parse(&text);
-        let (checked, found) = notation::check(&parse.tree);
-        if parse.diagnostics.iter().chain(&found).any(Diagnostic::is_error) {
-            continue;
-        }
-        for line in notation::matches(&text, &checked, instance, &job.instance.bind) {
+        let Some(lines) = matched(&text, &job.instance, instance) else { continue };
+        asked += 1;
+        found += usize::from(lines.iter().all(Match::is_well));
+        for line in lines {
             let problem = problem(&line, &text, place);
             match bindings.iter_mut().find(|known| known.name == line.name) {
                 Some(known) => join(known, &line, problem),
@@ -28,7 +32,58 @@ pub(crate) fn bindings(job: &BindJob, readings: &mut Readings) -> Vec<Binding> {
             }
         }
     }
-    bindings
+    let suits = if asked > 0 && found == 0 { suits(&job.instance, instance) } else { Vec::new() };
+    (bindings, suits)
+}
+
+/// What each line of data of a text takes; `None` where the text has errors.
+fn matched(text: &str, given: &InstanceText, instance: &Instance) -> Option<Vec<Match>> {
+    let parse = notation::parse(text);
+    let (checked, found) = notation::check(&parse.tree);
+    let sound = !parse.diagnostics.iter().chain(&found).any(Diagnostic::is_error);
+    sound.then(|| notation::matches(text, &checked, instance, &given.bind))
+}
+
+/// The families whose first formulation lacks one datum at most. What speaks for a family comes first:
+/// data that are found, and twice as much headings that its own words hold; against it what is to be
+/// chosen, and twice as much what is lacking.
+fn suits(given: &InstanceText, instance: &Instance) -> Vec<Suit> {
+    let (mut seen, mut suits) = (BTreeSet::new(), Vec::new());
+    for entry in catalogue::entries() {
+        if entry.relaxation || !seen.insert(entry.family) {
+            continue;
+        }
+        let Some(lines) = matched(entry.text, given, instance) else { continue };
+        let unwell: Vec<&Match> = lines.iter().filter(|line| !line.is_well()).collect();
+        let lacking = unwell.iter().filter(|line| !line.offers.iter().any(|offer| offer.fits));
+        let lacking: Vec<&&Match> = lacking.collect();
+        let lacks = match lacking.as_slice() {
+            [] => String::new(),
+            [one] => format!("{}, {}", one.name, one.meaning),
+            _ => continue,
+        };
+        let speaks = lines.len() - unwell.len() + 2 * headings(&lines);
+        let against = unwell.len() + lacking.len();
+        let suit = Suit { family: entry.family_title, lacks };
+        suits.push((speaks as i64 - against as i64, suit));
+    }
+    suits.sort_by_key(|(rank, _)| -rank);
+    suits.into_iter().map(|(_, suit)| suit).collect()
+}
+
+/// Letters at their begin in which words that mean the same agree.
+const STEM: usize = 4;
+
+/// How many names of the instance's data begin as a word of what some line means.
+fn headings(lines: &[Match]) -> usize {
+    let stem = |word: &str| word.to_lowercase().chars().take(STEM).collect::<String>();
+    let words = |text: &str| {
+        let words = text.split(|letter: char| !letter.is_alphabetic());
+        words.map(stem).filter(|stem| stem.chars().count() == STEM).collect::<Vec<_>>()
+    };
+    let meant: BTreeSet<String> = lines.iter().flat_map(|line| words(&line.meaning)).collect();
+    let offers = lines.first().map_or(&[][..], |line| line.offers.as_slice());
+    offers.iter().filter(|offer| words(&offer.name).iter().any(|stem| meant.contains(stem))).count()
 }
 
 fn binding(line: Match, problem: String) -> Binding {
@@ -101,7 +156,29 @@ mod tests {
         let bind = bind.iter().map(|&(name, of)| (name.to_owned(), of.to_owned())).collect();
         let instance = InstanceText { text: TABLES.to_owned(), bind, ..InstanceText::default() };
         let rivals = vec![rival("ufl/joined"), rival("ufl/split"), rival("no/such")];
-        bindings(&BindJob { instance, rivals }, &mut Readings::default())
+        bindings(&BindJob { instance, rivals }, &mut Readings::default()).0
+    }
+
+    fn suited(text: &str, id: &str) -> Vec<(String, String)> {
+        let rivals = vec![Rival { from: Some(id.to_owned()), ..Rival::default() }];
+        let instance = InstanceText { text: text.to_owned(), ..InstanceText::default() };
+        let (_, suits) = bindings(&BindJob { instance, rivals }, &mut Readings::default());
+        suits.into_iter().map(|suit| (suit.family, suit.lacks)).collect()
+    }
+
+    #[test]
+    fn where_no_rival_finds_its_data_the_families_that_do_are_told() {
+        let found = suited(TABLES, "atsp/labels");
+        assert_eq!(found[0], ("facility location, uncapacitated".to_owned(), String::new()));
+        assert!(suited(TABLES, "ufl/split").is_empty(), "a rival that finds all needs no other");
+        let items = "item\tvalue\tweight\nsaw\t5\t3\ndrill\t4\t2\nlamp\t3\t2\n";
+        let found = suited(items, "atsp/labels");
+        assert_eq!(found[0], ("knapsack".to_owned(), "b, what can be carried".to_owned()));
+        let lots = "period\tdemand\tsetup\n1\t20\t100\n2\t30\t90\n3\t10\t80\n";
+        assert!(suited(lots, "atsp/labels")[0].0.starts_with("lot sizing"));
+        let jobs = "job\tduration\tdue\tweight\na\t3\t5\t1\nb\t4\t6\t2\nc\t2\t9\t1\n";
+        let found = suited(jobs, "atsp/labels");
+        assert!(found.iter().take(6).any(|(family, _)| family == "one machine"), "{found:?}");
     }
 
     #[test]
@@ -127,6 +204,6 @@ mod tests {
 
     #[test]
     fn without_an_instance_there_is_nothing_to_bind() {
-        assert!(bindings(&BindJob::default(), &mut Readings::default()).is_empty());
+        assert_eq!(bindings(&BindJob::default(), &mut Readings::default()), (vec![], vec![]));
     }
 }

@@ -270,7 +270,7 @@ impl Drive {
                 | Reply::Studied(_)
                 | Reply::Audited(_)
                 | Reply::Log(_)
-                | Reply::Bound(_)
+                | Reply::Bound(..)
                 | Reply::Memory { .. } => {}
             }
         }

@@ -146,8 +146,8 @@ impl Worker {
             Request::Explain(code) => self.reply(Reply::Explained(explanation(&code))),
             Request::Write(form, job) => self.reply(handed_over(form, *job)),
             Request::Bind(job) => {
-                let bound = bindings(&job, &mut self.readings);
-                self.reply(Reply::Bound(bound));
+                let (bound, suits) = bindings(&job, &mut self.readings);
+                self.reply(Reply::Bound(bound, suits));
             }
             Request::Guide => self.reply(Reply::Guide(guide_sections())),
             Request::List => self.reply(Reply::Catalogue(catalogue_entries())),

@@ -124,6 +124,15 @@ pub struct Binding {
     pub offers: Vec<BindingOffer>,
 }
 
+/// A family of the catalogue whose data an instance holds.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Suit {
+    /// The family in words.
+    pub family: String,
+    /// The one datum that is missing, by its name and what it is; empty where none is.
+    pub lacks: String,
+}
+
 /// How a datum was found.
 #[derive(Debug, Clone, Copy, Default, PartialEq, Eq, Serialize, Deserialize)]
 pub enum FoundBy {
@@ -191,8 +200,9 @@ pub enum Reply {
     Explained(Explanation),
     /// A rival handed over.
     Written(Box<Written>),
-    /// Which data the rivals take from the instance, by their names.
-    Bound(Vec<Binding>),
+    /// Which data the rivals take from the instance, by their names; and where none of them finds all of
+    /// its own, the families of the catalogue that do.
+    Bound(Vec<Binding>, Vec<Suit>),
     /// What a study found.
     Studied(Vec<Report>),
     /// A rival was parsed, checked and expanded.

@@ -212,7 +212,7 @@ impl LaneRun {
             Reply::Checked(_)
             | Reply::Explained(_)
             | Reply::Relaxation(Ok(_))
-            | Reply::Bound(_)
+            | Reply::Bound(..)
             | Reply::Node(_)
             | Reply::Evidence(_)
             | Reply::Log(Ok(_))

@@ -460,9 +460,9 @@ impl Session {
                     reader.emit(guide.clone());
                 }
             }
-            FromWorker::Reply(Envelope { reply: Reply::Bound(bindings), .. }) => {
+            FromWorker::Reply(Envelope { reply: Reply::Bound(bindings, suits), .. }) => {
                 let document = self.0.borrow().document.clone();
-                document.dispatch(DocumentAction::Bound(bindings));
+                document.dispatch(DocumentAction::Bound(bindings, suits));
             }
             FromWorker::Reply(Envelope { reply: Reply::Checked(report), .. }) => {
                 let heard = self.0.borrow_mut().checks.end(report.number);

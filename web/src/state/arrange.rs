@@ -15,7 +15,12 @@ pub(crate) enum Arrange {
     Up(LaneId),
     /// A rival changes places with the one after it.
     Down(LaneId),
+    /// Rivals of a family of the catalogue take the place of all.
+    Family(String),
 }
+
+/// Rivals that a family gives at once.
+const FIRST: usize = 2;
 
 impl Arrange {
     /// What it is, in words.
@@ -23,6 +28,7 @@ impl Arrange {
         match self {
             Self::Rename(..) => "title of a rival",
             Self::Up(_) | Self::Down(_) => "order of the rivals",
+            Self::Family(_) => "rivals of another family",
         }
     }
 }
@@ -48,6 +54,14 @@ impl Document {
                     self.slots.swap(place, place + 1);
                 }
             }
+            Arrange::Family(family) => {
+                let catalogue = self.catalogue.clone();
+                let own = catalogue.iter().filter(|one| one.family == family && !one.relaxation);
+                self.slots.clear();
+                for entry in own.take(FIRST) {
+                    self.push(Rival { from: Some(entry.id.clone()), ..Rival::default() });
+                }
+            }
         }
     }
 }
@@ -56,6 +70,7 @@ impl Document {
 mod tests {
     use std::rc::Rc;
 
+    use record::message::CatalogueEntry;
     use record::scenario::Scenario;
     use yew::Reducible;
 
@@ -64,6 +79,35 @@ mod tests {
 
     fn order(document: &Document) -> Vec<u32> {
         document.slots.iter().map(|slot| slot.id.0).collect()
+    }
+
+    #[test]
+    fn a_family_gives_its_first_rivals_but_for_relaxations() {
+        let entry = |id: &str, relaxation| CatalogueEntry {
+            id: id.to_owned(),
+            family: id.split('/').next().unwrap_or_default().to_owned(),
+            relaxation,
+            ..CatalogueEntry::default()
+        };
+        let entries = vec![
+            entry("round/weak", true),
+            entry("round/a", false),
+            entry("path/a", false),
+            entry("round/b", false),
+            entry("round/c", false),
+        ];
+        let rivals = vec![Rival::default(), Rival::default()];
+        let first = Rc::new(Document::open(Scenario { rivals, ..Scenario::default() }));
+        let listed = first.reduce(DocumentAction::Catalogue(entries));
+        let family = Arrange::Family("round".to_owned());
+        let taken = listed.reduce(DocumentAction::Arrange(family));
+        let ids = |document: &Document| {
+            let from = document.slots.iter().map(|slot| slot.rival.from.clone());
+            from.collect::<Vec<_>>()
+        };
+        assert_eq!(ids(&taken), [Some("round/a".to_owned()), Some("round/b".to_owned())]);
+        assert_eq!(taken.history.undo_words(), Some("rivals of another family"));
+        assert_eq!(ids(&taken.reduce(DocumentAction::Undo)), [None, None]);
     }
 
     #[test]

@@ -15,7 +15,7 @@ use crate::state::recorded::Recorded;
 use crate::state::same::Made;
 use crate::state::steer::Steer;
 use record::file::{looks_like_a_scenario, parse};
-use record::message::{Binding, CatalogueEntry, InstanceReport};
+use record::message::{Binding, CatalogueEntry, InstanceReport, Suit};
 use record::scenario::{
     FamilyState, InstanceText, MOST_RIVALS, Rival, Role, Run, Scenario, letter,
 };
@@ -90,6 +90,8 @@ pub(crate) struct Document {
     pub(crate) chosen: usize,
     /// What the rivals take from the instance, by their names.
     pub(crate) bindings: Shared<Vec<Binding>>,
+    /// Families whose data the instance holds, where no rival finds all of its own.
+    pub(crate) suits: Shared<Vec<Suit>>,
     /// Lanes that a change of names did not touch, with the text that they still run on.
     pub(crate) held: BTreeMap<LaneId, Shared<InstanceText>>,
     /// The rivals in order.
@@ -130,8 +132,8 @@ pub(crate) enum DocumentAction {
     Reader(Option<String>),
     /// A text was read.
     Read(Shared<InstanceText>, InstanceReport),
-    /// It is known what the rivals take from the instance.
-    Bound(Vec<Binding>),
+    /// It is known what the rivals take from the instance, and what would suit it where none does.
+    Bound(Vec<Binding>, Vec<Suit>),
     /// A name of the rivals takes another datum of the instance; `None` leaves it to be found.
     Bind(String, Option<String>),
     /// An instance joins, leaves, is chosen or named.
@@ -178,6 +180,7 @@ impl Document {
             others: others.into_iter().map(Shared::new).collect(),
             chosen: 0,
             bindings: Shared::new(Vec::new()),
+            suits: Shared::new(Vec::new()),
             held: BTreeMap::new(),
             slots: Vec::new(),
             catalogue: Shared::new(Vec::new()),
@@ -369,7 +372,10 @@ impl Document {
                 document.catalogue = Shared::new(entries);
                 document.recognise();
             }
-            DocumentAction::Bound(bindings) => document.bindings = Shared::new(bindings),
+            DocumentAction::Bound(bindings, suits) => {
+                document.bindings = Shared::new(bindings);
+                document.suits = Shared::new(suits);
+            }
             DocumentAction::Bind(name, taken) => document.bind(name, taken),
             DocumentAction::Instances(edit) => document.edit_instances(edit),
             DocumentAction::Add(id) => {

@@ -94,7 +94,7 @@ fn change(document: &Document, action: &DocumentAction) -> Option<Change> {
         DocumentAction::Table(_) => typed("table of results"),
         DocumentAction::Read(..)
         | DocumentAction::Catalogue(_)
-        | DocumentAction::Bound(_)
+        | DocumentAction::Bound(..)
         | DocumentAction::ForgetPack
         | DocumentAction::Undo
         | DocumentAction::Redo => None,

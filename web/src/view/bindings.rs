@@ -1,12 +1,17 @@
-//! Which datum of the instance each name of the rivals takes, where the names differ.
+//! Which datum of the instance each name of the rivals takes, where the names differ; and whose rivals
+//! would find their data, where none of these does.
 
 use record::message::{BindJob, Binding, BindingOffer, FoundBy};
 use web_sys::HtmlSelectElement;
 use yew::prelude::*;
 
+use crate::state::arrange::Arrange;
 use crate::state::document::{Document, DocumentAction};
-use crate::view::hands::use_hands;
+use crate::view::hands::{Hands, use_hands};
 use crate::view::instance::InstanceProps;
+
+/// Families offered at most.
+const SUITS: usize = 6;
 
 /// The table; nothing while every name is the instance's own.
 #[component]
@@ -37,18 +42,51 @@ pub(crate) fn Bindings(props: &InstanceProps) -> Html {
         })
     };
     html! {
+        <>
+        { suits(document, hands.as_ref()) }
         <div class="scroll" tabindex="0" role="region" aria-label="Data that the rivals take">
             <table class="bindings" data-testid="bindings">
                 <caption>{ "What the rivals take from the instance." }</caption>
                 <thead><tr>
                     <th scope="col">{ "rivals' name" }</th>
                     <th scope="col">{ "takes" }</th>
-                    <th scope="col">{ "" }</th>
+                    <td />
                 </tr></thead>
                 <tbody>
                     for line in document.bindings.iter() { { row(document, line, choose(&line.name)) } }
                 </tbody>
             </table>
+        </div>
+        </>
+    }
+}
+
+/// Families whose data the instance holds, where no rival finds all of its own: one click takes their
+/// rivals in place of these.
+fn suits(document: &Document, hands: Option<&Hands>) -> Html {
+    if document.suits.is_empty() {
+        return Html::default();
+    }
+    let take = |family: &str| {
+        let (hands, family) = (hands.cloned(), family.to_owned());
+        Callback::from(move |_: MouseEvent| {
+            if let Some(hands) = &hands {
+                let family = Arrange::Family(family.clone());
+                hands.document.dispatch(DocumentAction::Arrange(family));
+            }
+        })
+    };
+    html! {
+        <div class="suits" role="group" aria-label="Rivals that suit the instance" data-testid="suits">
+            <p class="small">{ "No rival finds all of its data here. Take rivals of a family that does, or nearly:" }</p>
+            <ul class="acts">
+                for suit in document.suits.iter().take(SUITS) {
+                    <li key={suit.family.clone()}>
+                        <button type="button" onclick={take(&suit.family)}>{ suit.family.clone() }</button>
+                        if !suit.lacks.is_empty() { <span class="small soft">{ format!(" lacks {}", suit.lacks) }</span> }
+                    </li>
+                }
+            </ul>
         </div>
     }
 }

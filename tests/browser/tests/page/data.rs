@@ -102,6 +102,34 @@ async fn foreign_headings_are_mapped_in_the_table() -> Outcome<()> {
     .await
 }
 
+/// From the page as it opens to two rivals on tables that are no round trip: pasted, a family that suits
+/// is taken, the one datum that two headings suit is chosen, all run. Each is a click but the choice, which
+/// is two.
+#[tokio::test(flavor = "multi_thread")]
+async fn five_actions_lead_from_tables_of_another_problem_to_two_rivals_that_run() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        status(browser, "C", "root solved").await?;
+        paste(browser, TABLES).await?;
+        browser.shows("No rival finds all of its data here.").await?;
+        browser.find("button", "facility location, uncapacitated").await?.click().await?;
+        let choice = browser.select(&format!("{} select", line("f"))).await?;
+        choice.select_by_value("permit").await?;
+        for letter in ["A", "B"] {
+            status(browser, letter, "root solved").await?;
+        }
+        let gone = "return document.querySelector('[data-testid=suits]') === null";
+        let gone = async || Ok(browser.script(gone).await? == true);
+        browser.until("nothing else is offered", SOON, gone).await?;
+        browser.still("[data-testid=run-all]").await?.click().await?;
+        for letter in ["A", "B"] {
+            // Ashford alone: 62 + 31 + 24.
+            status(browser, letter, "closed: 117 is optimal").await?;
+        }
+        Ok(())
+    })
+    .await
+}
+
 /// A datum of the wrong shape names the `data` line, and one that lacks a value the cell as well.
 #[tokio::test(flavor = "multi_thread")]
 async fn a_wrong_shape_and_a_missing_cell_name_their_line() -> Outcome<()> {

@@ -11,6 +11,8 @@ use crate::{Outcome, fault};
 /// What is traced: tasks, and the marks of `performance.mark`.
 pub(crate) const CATEGORIES: &str = "toplevel,blink.user_timing";
 const TASK: &str = "ThreadControllerImpl::RunTask";
+/// A smaller piece of what was traced is the last.
+const PIECE: usize = 1_000;
 
 /// A task of the page's own thread.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -58,15 +60,7 @@ impl Browser {
     /// # Errors
     /// Those of the driver; that no mark was set.
     pub async fn tasks(&self) -> Outcome<Tasks> {
-        let log = self.post(Post::trace()).await?;
-        let events: Vec<Value> = log
-            .as_array()
-            .map(Vec::as_slice)
-            .unwrap_or_default()
-            .iter()
-            .filter_map(|entry| serde_json::from_str(entry["message"].as_str()?).ok())
-            .map(|mut message: Value| message["message"]["params"].take())
-            .collect();
+        let events = self.traced().await?;
         let of_mark = |event: &&Value| event["cat"] == "blink.user_timing";
         let last = events.iter().rev().find(of_mark).ok_or_else(|| fault("no mark was set"))?;
         let (process, thread) = (last["pid"].clone(), last["tid"].clone());
@@ -85,5 +79,22 @@ impl Browser {
         found.all.sort_by(|one, other| one.at.total_cmp(&other.at));
         found.marks.sort_by(|one, other| one.1.total_cmp(&other.1));
         Ok(found)
+    }
+
+    /// All that was traced, which the driver hands over piece by piece.
+    async fn traced(&self) -> Outcome<Vec<Value>> {
+        let mut events = Vec::new();
+        loop {
+            let log = self.post(Post::trace()).await?;
+            let entries = log.as_array().map(Vec::as_slice).unwrap_or_default();
+            let messages = entries
+                .iter()
+                .filter_map(|entry| serde_json::from_str(entry["message"].as_str()?).ok())
+                .map(|mut message: Value| message["message"]["params"].take());
+            events.extend(messages);
+            if entries.len() < PIECE {
+                return Ok(events);
+            }
+        }
     }
 }

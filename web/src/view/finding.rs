@@ -29,7 +29,7 @@ pub(crate) fn section(section: &Section) -> Html {
                 <div class="scroll">{ drawn(figure) }</div>
             }
             if let Some(found) = &section.table {
-                <div class="scroll" tabindex="0" role="region" aria-label={section.heading.clone()}>
+                <div class="scroll" tabindex="0" role="group" aria-label={section.heading.clone()}>
                     { table(found) }
                 </div>
             }

@@ -142,7 +142,7 @@ fn count(value: impl Into<u64>) -> String {
 fn grouped(digits: &str) -> String {
     let mut text = String::new();
     for (place, digit) in digits.chars().enumerate() {
-        if place > 0 && (digits.len() - place) % 3 == 0 {
+        if place > 0 && (digits.len() - place).is_multiple_of(3) {
             text.push(',');
         }
         text.push(digit);

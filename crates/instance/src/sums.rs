@@ -73,8 +73,11 @@ async fn numbers(values: &[&Number], pace: &Pace) -> String {
 
 /// Whether they are whole, and how many differ.
 async fn spread(values: &[&Number], pace: &Pace) -> String {
-    let fractions = values.iter().filter(|value| !value.is_int()).count();
-    pace.spend(values.len()).await;
+    let mut fractions = 0;
+    for value in values {
+        pace.spend(1).await;
+        fractions += usize::from(!value.is_int());
+    }
     let different = different(values, pace).await;
     let whole = match fractions {
         0 => "all whole".to_owned(),

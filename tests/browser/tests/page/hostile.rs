@@ -307,10 +307,10 @@ async fn rivals_and_acts_without_end_leave_the_page_alive() -> Outcome<()> {
 async fn limits_at_their_ends_leave_the_page_alive() -> Outcome<()> {
     let refused = [
         ("nodes = -1", "nodes is out of range"),
-        ("seconds = nan", "`seconds` must be a finite number"),
-        ("seconds = inf", "`seconds` must be a finite number"),
-        ("seconds = -1e308", "`seconds` must not be negative"),
-        ("best_known = nan", "`best_known` must be a finite number"),
+        ("seconds = nan", "seconds must be a finite number"),
+        ("seconds = inf", "seconds must be a finite number"),
+        ("seconds = -1e308", "seconds must not be negative"),
+        ("best_known = nan", "best_known must be a finite number"),
         ("iterations = 18446744073709551616", "iterations is out of range"),
     ];
     visit(Source::File, async |browser| {

@@ -391,3 +391,42 @@ fn the_dual_share_is_a_range_where_multipliers_are_not_unique_and_0_where_sides_
     let nothing = (Some(0.0), Some(0.0));
     assert_eq!((share("idle"), share("zero")), (nothing, nothing));
 }
+
+/// Without `cap` the objective has no end, so that no order of adding families has a value.
+#[test]
+fn where_a_coalition_is_unbounded_there_is_no_share_and_that_is_said() {
+    let text = "Two\nminimise\n  y − x\nsubject to\n  x ≤ 3  (cap)\n  x + y ≥ 1  (some)\n  0 ≤ y ≤ 9\n  x ≥ 0\n";
+    let subjects = vec![subject("A", text, &instance("T\na b\n"))];
+    let found = driven(9_999, |desk| crate::families::families(desk, subjects, Plan::default()));
+    let rival = &found.rivals[0];
+    assert!(rival.no_shapley.contains("without a bound"), "{rival:?}");
+    assert_eq!((rival.bound, rival.bare), (Some(-3.0), None));
+    let [cap, some] = rival.families.as_slice() else { panic!("{rival:?}") };
+    assert_eq!((cap.without, cap.lost, cap.alone), (None, None, Some(-3.0)), "{cap:?}");
+    assert_eq!((some.without, some.lost, some.alone), (Some(-3.0), Some(0.0), None), "{some:?}");
+    assert!(cap.shapley.is_none() && some.shapley.is_none());
+}
+
+/// With the sites chosen each client takes its cheapest open one, so that `x` need not be said to be whole
+/// (Krarup, Pruzan 1983, European Journal of Operational Research 12); where it is, `y` need not, for it is
+/// at least as large. Three sites, each the cheap one of two of three clients: half of each costs 3/2,
+/// whole ones 2.
+#[test]
+fn which_variables_may_be_fractional_is_known_of_sites() {
+    let data = instance(
+        "I\np q r\n\nJ\n1 2 3\n\nf by i\np 1\nq 1\nr 1\n\nc by i, j\n\
+         p 1 0\np 2 0\np 3 9\nq 1 0\nq 2 9\nq 3 0\nr 1 9\nr 2 0\nr 3 0\n",
+    );
+    let text = LINKED.replace("  x_{i,j} ≥ 0   ", "  x_{i,j} ∈ {0, 1}");
+    assert_ne!(text, LINKED);
+    let subjects = vec![subject("A", &text, &data), subject("B", LINKED, &data)];
+    let found = driven(9_999, |desk| crate::families::families(desk, subjects, Plan::default()));
+    let of = |rival: usize, name: &str| {
+        let share = found.rivals[rival].integrality.iter().find(|one| one.variable == name);
+        let share = share.unwrap_or_else(|| panic!("{name}: {found:?}"));
+        (share.columns, share.optimum, share.free)
+    };
+    assert_eq!(of(0, "x"), (9, Some(2.0), Some(true)));
+    assert_eq!(of(0, "y"), (3, Some(2.0), Some(true)));
+    assert_eq!(of(1, "y"), (3, Some(1.5), Some(false)));
+}

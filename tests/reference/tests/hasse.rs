@@ -20,9 +20,9 @@ const LETTERS: [&str; 7] = ["A", "B", "C", "D", "E", "F", "G"];
 fn above(random: &mut Pcg32) -> Vec<Vec<bool>> {
     let n = LETTERS.len();
     let mut above = vec![vec![false; n]; n];
-    for from in 0..n {
-        for to in from + 1..n {
-            above[from][to] = random.next_u32().is_multiple_of(3);
+    for (from, row) in above.iter_mut().enumerate() {
+        for it in row.iter_mut().skip(from + 1) {
+            *it = random.next_u32().is_multiple_of(3);
         }
     }
     for middle in 0..n {

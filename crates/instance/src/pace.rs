@@ -12,13 +12,17 @@ use std::task::{Context, Poll, Waker};
 /// What is left of a slice, in ticks: a tick is a cell or a character of the text looked at, or a
 /// few simple steps.
 #[derive(Debug, Clone, Default)]
-pub struct Pace(Rc<Cell<u64>>);
+pub struct Pace {
+    left: Rc<Cell<u64>>,
+    spent: Rc<Cell<u64>>,
+}
 
 impl Pace {
     /// Counts `ticks`; where that ends the slice, lets go until the next one.
     pub async fn spend(&self, ticks: usize) {
-        let left = self.0.get().saturating_sub(ticks as u64);
-        self.0.set(left);
+        let left = self.left.get().saturating_sub(ticks as u64);
+        self.left.set(left);
+        self.spent.set(self.spent.get().saturating_add(ticks as u64));
         let mut asked = left > 0;
         poll_fn(
             |_| if std::mem::replace(&mut asked, true) { Poll::Ready(()) } else { Poll::Pending },
@@ -48,7 +52,8 @@ impl<'w, T> Slices<'w, T> {
 
     /// Goes on for about so many ticks; what came out, once, where that ends the work.
     pub fn advance(&mut self, ticks: u64) -> Option<T> {
-        self.pace.0.set(ticks);
+        self.pace.left.set(ticks);
+        self.pace.spent.set(0);
         let mut nobody = Context::from_waker(Waker::noop());
         match self.work.as_mut()?.as_mut().poll(&mut nobody) {
             Poll::Ready(found) => {
@@ -57,6 +62,12 @@ impl<'w, T> Slices<'w, T> {
             }
             Poll::Pending => None,
         }
+    }
+
+    /// The ticks that the last slice took: more than it was given where a step could not be cut.
+    #[must_use]
+    pub fn spent(&self) -> u64 {
+        self.pace.spent.get()
     }
 
     /// All of the work at once.

@@ -2,8 +2,8 @@
 
 use std::process::Stdio;
 
-use tokio::io::{AsyncBufReadExt, BufReader, Lines};
-use tokio::process::{Child, ChildStdout, Command};
+use tokio::io::{AsyncBufReadExt, BufReader, copy, sink};
+use tokio::process::{Child, Command};
 
 use crate::{Outcome, fault};
 
@@ -11,8 +11,6 @@ use crate::{Outcome, fault};
 #[derive(Debug)]
 pub(crate) struct Listening {
     child: Child,
-    // Kept open: a program whose output is closed may stop when it next prints.
-    _output: Lines<BufReader<ChildStdout>>,
     said: String,
 }
 
@@ -36,7 +34,11 @@ impl Listening {
         let mut lines = BufReader::new(output).lines();
         while let Some(line) = lines.next_line().await? {
             if let Some(said) = tells(&line) {
-                return Ok(Self { child, _output: lines, said });
+                // Read to its end: a program whose output is closed may stop when it next prints, and one
+                // whose output nobody reads stands still. geckodriver prints the addresses that Firefox
+                // complains of, and a link longer than a pipe's 64 KiB held up its test for ever.
+                tokio::spawn(async move { copy(&mut lines.into_inner(), &mut sink()).await });
+                return Ok(Self { child, said });
             }
         }
         Err(fault(format!("{name} ended without saying where it listens")))

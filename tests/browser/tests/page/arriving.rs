@@ -16,12 +16,11 @@ const HELD_BACK: Duration = Duration::from_secs(3);
 /// The browser's own mark at the begin of a journey.
 const BEGIN: &str = "navigationStart";
 
-/// When the page had opened, when the last byte of its file was there, when the engine was, in
-/// milliseconds from the begin of the journey.
+/// When the page had opened and when the engine was there, in milliseconds from the begin of the journey.
+/// (When the last byte of the file was there, Firefox does not say: what it tells is long before.)
 const TIMES: &str = "
     const mark = (name) => performance.getEntriesByName(name)[0]?.startTime ?? -1;
-    const [way] = performance.getEntriesByType('navigation');
-    return [mark('page open'), way.responseEnd, mark('engine there')];
+    return [mark('page open'), mark('engine there')];
 ";
 
 /// Serves the file once, and its engine later. Gives the address.
@@ -68,9 +67,10 @@ async fn the_page_opens_before_the_engine_has_arrived_and_works_once_it_has() ->
         };
         browser.until("the engine is there", SOON, there).await?;
         let times = browser.script(TIMES).await?;
-        let [open, whole, engine]: [f64; 3] = serde_json::from_value(times)?;
-        assert!(open > 0.0 && open < whole, "open {open}, the file there {whole}");
-        assert!(whole >= 2900.0 && engine > whole, "the file there {whole}, the engine {engine}");
+        let [open, engine]: [f64; 2] = serde_json::from_value(times)?;
+        // The rest of the file left the server so long after it had been asked for.
+        let rest = HELD_BACK.as_secs_f64() * 1000.0;
+        assert!(open > 0.0 && open < rest && engine > rest, "open {open}, the engine {engine}");
         // What was asked for meanwhile waited in the worker: the demo's rivals have their bounds.
         browser.shows("root solved").await
     })

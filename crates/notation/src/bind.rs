@@ -16,6 +16,7 @@ use crate::evaluate::{
 use crate::expand::Progress;
 use crate::plan::{Node, Root, Shape, Symbol, SymbolId};
 use crate::syntax::Relation;
+use crate::turned::{self, Order};
 
 /// A formulation with the data of an instance.
 #[derive(Debug)]
@@ -60,6 +61,8 @@ struct Indexed {
     cells: TupleMap<Value>,
     /// Whether cells of a table are still to come, and behind which.
     table: Option<Option<Vec<String>>>,
+    /// Whether the places of the table's keys are exchanged.
+    turned: bool,
     walk: Walk,
     env: Environment,
     values: TupleMap<Value>,
@@ -159,9 +162,14 @@ impl<'i> Binder<'i> {
             }
             None => TupleMap::default(),
         };
+        let turned = match datum.filter(|_| table) {
+            Some(Datum::Table { arity: 2, cells }) => self.is_turned(symbol, cells),
+            _ => false,
+        };
         Some(Indexed {
             id,
             cells,
+            turned,
             table: table.then_some(None),
             walk: Walk::default(),
             env: self.evaluator.environment(),
@@ -177,8 +185,38 @@ impl<'i> Binder<'i> {
         }
     }
 
+    /// The name by which the instance holds a symbol.
     fn key<'s>(&'s self, symbol: &'s Symbol) -> &'s str {
-        self.names.get(&symbol.name).map_or(symbol.name.as_str(), String::as_str)
+        self.names.get(&symbol.name).map_or(symbol.name.as_str(), |given| turned::named(given).0)
+    }
+
+    /// Whether a table over two sets is to be turned round: where a person says so, or where its
+    /// labels fit the sets only then, which is told, as it is where they fit both ways.
+    fn is_turned(&mut self, symbol: &Symbol, cells: &BTreeMap<Vec<String>, Number>) -> bool {
+        let given = self.names.get(&symbol.name);
+        if given.is_some_and(|given| turned::named(given).1) {
+            return true;
+        }
+        let mut pool = self.evaluator.pool.borrow_mut();
+        let values = &self.evaluator.values;
+        let holds = |root: Root, label: &str| match root {
+            Root::Set(id) => match values.get(id) {
+                Some(Some(Values::Single(Value::Set(set)))) => set.contains(&[pool.intern(label)]),
+                _ => true,
+            },
+            Root::Integer => label.parse::<i64>().is_ok(),
+            Root::Unknown => true,
+        };
+        let found = turned::order(&symbol.roots, cells, holds);
+        match found {
+            Order::Turned => self.notes.push(message::turned(&symbol.name, symbol.span)),
+            Order::Either => {
+                let key = self.key(symbol).to_owned();
+                self.notes.push(message::either_way(&symbol.name, &key, symbol.span));
+            }
+            Order::Declared => {}
+        }
+        found == Order::Turned
     }
 
     /// The name of a symbol, with the one it was given where that is another.
@@ -394,7 +432,7 @@ impl<'i> Binder<'i> {
     /// Whether a datum is a table with the indices of a symbol, to be read cell by cell.
     fn is_table(&self, symbol: &Symbol, datum: &Datum) -> bool {
         let number = matches!(symbol.shape, Shape::Number | Shape::Element(_));
-        number && matches!(datum, Datum::Table { arity, .. } if *arity == symbol.indices.len())
+        number && matches!(datum, Datum::Table { arity, .. } if symbol.has_places(*arity))
     }
 
     /// Goes on with the cells of a table; whether all of them are read.
@@ -406,7 +444,11 @@ impl<'i> Binder<'i> {
         let mut pool = self.evaluator.pool.borrow_mut();
         let from = behind.map_or(Unbounded, Excluded);
         for (key, value) in cells.range((from, Unbounded)) {
-            let own: Vec<Element> = key.iter().map(|cell| pool.intern(cell)).collect();
+            let own = symbol.whole_key(key);
+            let mut own: Vec<Element> = own.iter().map(|cell| pool.intern(cell)).collect();
+            if open.turned {
+                own.reverse();
+            }
             open.cells.insert(&own, Value::Number(value.clone()));
             *budget = budget.saturating_sub(1);
             if *budget == 0 {
@@ -424,6 +466,11 @@ impl<'i> Binder<'i> {
         let mut pool = self.evaluator.pool.borrow_mut();
         let mut cells = TupleMap::default();
         match (datum, &symbol.shape) {
+            (Datum::Number(value), Shape::Number) if symbol.has_places(0) => {
+                let own = symbol.whole_key(&[]);
+                let key: Vec<Element> = own.iter().map(|cell| pool.intern(cell)).collect();
+                cells.insert(&key, Value::Number(value.clone()));
+            }
             (Datum::Tuples { arity, rows }, Shape::Element(_)) if *arity == places + 1 => {
                 for row in rows {
                     let mut key: Vec<Element> = row.iter().map(|cell| pool.intern(cell)).collect();

@@ -34,6 +34,7 @@ mod plan;
 pub mod print;
 mod rewrite;
 pub mod syntax;
+mod turned;
 
 use std::collections::BTreeMap;
 

@@ -9,8 +9,9 @@ use instance::{Datum, Instance};
 use crate::bind::noun;
 use crate::check::Checked;
 use crate::diagnostic::{Diagnostic, data as message};
-use crate::plan::{Root, Shape, Symbol, SymbolId};
+use crate::plan::{Node, Root, Shape, Symbol, SymbolId};
 use crate::syntax::plain;
+use crate::turned::{MARK, named};
 
 /// How a datum was found.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -94,7 +95,7 @@ pub fn matches(
             && !symbols.iter().any(|symbol| symbol.name == letters)
         {
             matcher.take_letters(id, letters);
-        } else if let Some(spelt) = spelt_alike(name, symbols, instance) {
+        } else if let Some(spelt) = spelt_alike(&symbols[id], symbols, instance) {
             matcher.take_letters(id, spelt);
         }
     }
@@ -151,17 +152,24 @@ fn letters(name: &str) -> Option<&str> {
     (is_type && !letters.contains(' ')).then_some(letters)
 }
 
-/// `c_NL` for `c^{\text{NL}}`, `Pmax` for `P_{\max}`: the one datum with the same letters and
-/// digits, unless the formulation has that name as well.
-fn spelt_alike<'i>(name: &str, symbols: &[Symbol], instance: &'i Instance) -> Option<&'i str> {
-    let wanted = letters_and_digits(name);
+/// `c_NL` for `c^{\text{NL}}`, `Pmax` for `P_{\max}`, `I0` for `I_{k0}`: the one datum with the
+/// same letters and digits, unless the formulation has that name as well.
+fn spelt_alike<'i>(symbol: &Symbol, symbols: &[Symbol], instance: &'i Instance) -> Option<&'i str> {
+    let letters = letters_and_digits(&symbol.name);
+    let place: String = symbol.indices.iter().filter_map(Node::constant).collect();
+    let numbered = spelt_as(&format!("{letters}{place}"), symbols, instance);
+    numbered.or_else(|| spelt_as(&letters, symbols, instance))
+}
+
+/// The one datum with these letters and digits.
+fn spelt_as<'i>(wanted: &str, symbols: &[Symbol], instance: &'i Instance) -> Option<&'i str> {
     let alike = instance.data().map(|(datum, _)| datum).filter(|datum| {
         letters_and_digits(datum) == wanted && symbols.iter().all(|symbol| symbol.name != **datum)
     });
     let alike: Vec<&str> = alike.take(2).collect();
     let twin = symbols.iter().filter(|symbol| letters_and_digits(&symbol.name) == wanted).count();
     match alike[..] {
-        [only] if twin == 1 && !wanted.is_empty() => Some(only),
+        [only] if twin < 2 && !wanted.is_empty() => Some(only),
         _ => None,
     }
 }
@@ -307,13 +315,29 @@ impl Matcher<'_> {
             _ => return true,
         };
         self.taken.iter().all(|(&other, (name, _))| {
-            let Some(Datum::Table { cells, .. }) = self.instance.get(name) else { return true };
+            let Some(Datum::Table { cells, .. }) = self.instance.get(named(name).0) else {
+                return true;
+            };
             let roots = self.symbols[other].roots.iter().enumerate();
             let mut places = roots.filter(|(_, root)| **root == Root::Set(id));
             places.all(|(place, _)| {
                 cells.keys().all(|key| key.get(place).is_none_or(|label| members.contains(label)))
             })
         })
+    }
+
+    /// Tables over two indices may be taken turned round.
+    fn turned_offers(&self, symbol: &Symbol) -> Vec<Offer> {
+        let two = symbol.roots.len() == 2 && symbol.roots[0] != symbol.roots[1];
+        let tables = self.instance.data().filter(|(_, datum)| {
+            two && matches!(datum, Datum::Table { arity: 2, .. }) && fits(symbol, datum)
+        });
+        let turned = |(name, _): (&str, &Datum)| Offer {
+            name: format!("{name}{MARK}"),
+            what: "a table turned round",
+            fits: true,
+        };
+        tables.map(turned).collect()
     }
 
     fn line(&self, id: SymbolId) -> Match {
@@ -330,6 +354,7 @@ impl Matcher<'_> {
                 fits: fits(symbol, datum),
             })
             .collect();
+        offers.extend(self.turned_offers(symbol));
         offers.sort_by_key(|offer| !offer.fits);
         Match {
             name: called(self.text, symbol),
@@ -347,13 +372,13 @@ impl Matcher<'_> {
 fn fits(symbol: &Symbol, datum: &Datum) -> bool {
     let places = symbol.indices.len();
     match (&symbol.shape, datum) {
-        (Shape::Number, Datum::Number(_)) => places == 0,
+        (Shape::Number, Datum::Number(_)) => symbol.has_places(0),
         (Shape::Element(_), Datum::Element(_)) => places == 0,
         (Shape::Set(roots), Datum::Labels(_) | Datum::Integers(_)) => {
             places == 0 && roots.len() == 1
         }
         (Shape::Number | Shape::Element(_), Datum::Table { arity, .. }) => {
-            places > 0 && *arity == places
+            places > 0 && symbol.has_places(*arity)
         }
         (Shape::Element(_), Datum::Tuples { arity, .. }) => places > 0 && *arity == places + 1,
         (Shape::Set(roots), Datum::Tuples { arity, .. }) => *arity == places + roots.len(),

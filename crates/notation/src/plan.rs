@@ -55,6 +55,25 @@ pub(crate) struct Symbol {
     pub(crate) used: bool,
 }
 
+impl Symbol {
+    /// Whether a datum over so many places gives it: one for each index, or for each that is no
+    /// number (`I_{k0}` may be given over `k` alone).
+    pub(crate) fn has_places(&self, places: usize) -> bool {
+        let free = self.indices.iter().filter(|index| index.constant().is_none()).count();
+        places == self.indices.len() || places == free
+    }
+
+    /// A key with the indices that are numbers put in, where it lacks them.
+    pub(crate) fn whole_key(&self, key: &[String]) -> Vec<String> {
+        if key.len() == self.indices.len() {
+            return key.to_vec();
+        }
+        let mut given = key.iter().cloned();
+        let places = self.indices.iter();
+        places.map(|index| index.constant().or_else(|| given.next()).unwrap_or_default()).collect()
+    }
+}
+
 /// A variable with its domain lines.
 #[derive(Debug, Clone)]
 pub(crate) struct Variable {
@@ -194,6 +213,17 @@ pub(crate) enum Node {
     Not(Box<Node>),
     Parity(bool, Box<Node>, Span),
     Clique(Box<Node>, Box<Node>),
+}
+
+impl Node {
+    /// The label of an index that is a whole number.
+    pub(crate) fn constant(&self) -> Option<String> {
+        match self {
+            Self::AsElement(inner, _) => inner.constant(),
+            Self::Number(value) if value.is_int() => Some(value.numerator().to_string()),
+            _ => None,
+        }
+    }
 }
 
 /// All of a checked formulation.

@@ -174,9 +174,9 @@ impl Name {
     }
 }
 
-/// A name without the mark that tells `K_i` from a set `K`.
+/// A name without the mark that tells `K_i` from a set `K`, a datum `I_{k0}` from a variable `I_{kt}`.
 pub(crate) fn plain(name: &str) -> &str {
-    name.strip_suffix('_').unwrap_or(name)
+    name.trim_end_matches('_')
 }
 
 /// Operators of the additive level.

@@ -21,7 +21,7 @@ use hullward_notation::{
 };
 
 /// Codes that no text alone can give, each with what gives it.
-const BY_OTHER_MEANS: [(&str, &str); 15] = [
+const BY_OTHER_MEANS: [(&str, &str); 17] = [
     ("lint.empty-rows", "a model in MPS"),
     ("lint.too-large", "more than 60,000 entries"),
     ("syntax.too-deep", "a hundred brackets"),
@@ -30,6 +30,8 @@ const BY_OTHER_MEANS: [(&str, &str); 15] = [
     ("subset.on-demand", "a family that is switched in"),
     ("data.assumed", "a line of the instance's reader"),
     ("data.matched", "an instance with other names"),
+    ("data.turned", "a table whose rows are the second index"),
+    ("data.either-way", "a table that fits two sets both ways"),
     ("data.whole", "a value that is not whole"),
     ("data.no-family", "a family that is switched and is not there"),
     ("data.unavailable", "a definition whose reason is told elsewhere"),
@@ -154,6 +156,36 @@ fn what_no_short_text_shows_is_told_too() {
     let (checked, _) = check(&parse(&other).tree);
     let (_, matched) = assumed(&other, &checked, &common::stops(5), &BTreeMap::new());
     assert!(matched.iter().any(|d| d.code == "data.matched"), "{matched:?}");
+}
+
+/// A table over stops and colours, given by colours and stops; and over two sets of the same labels.
+#[test]
+fn the_order_of_a_table_is_told() {
+    let text = "data\n  V\n  K\n  w_{i,k} ∀ i ∈ V, k ∈ K\nminimise\n  Σ_{i ∈ V} Σ_{k ∈ K} w_{i,k} x_{i,k}\n\
+        subject to\n  x_{i,k} ≥ 1 ∀ i ∈ V, k ∈ K (least)\n  x_{i,k} ≥ 0 ∀ i ∈ V, k ∈ K\n";
+    let labels = |of: &[&str]| of.iter().map(|&label| label.to_owned()).collect::<Vec<_>>();
+    let costs = |sides: [&[&str]; 2], names: &BTreeMap<String, String>| {
+        let mut instance = instance::Instance::new(instance::Reader::Blocks);
+        instance.set("V", instance::Datum::Labels(labels(&["a", "b"])));
+        let colours: &[&str] = if sides[0] == sides[1] { &["b", "a"] } else { &["red", "blue"] };
+        instance.set("K", instance::Datum::Labels(labels(colours)));
+        let pairs =
+            sides[0].iter().flat_map(|one| sides[1].iter().map(move |other| [*one, *other]));
+        let cells = pairs.zip(1_u32..).map(|(key, value)| (labels(&key), value.into()));
+        instance.set("w", instance::Datum::Table { arity: 2, cells: cells.collect() });
+        let (model, found) = model(text, &instance, names, &BTreeMap::new()).unwrap();
+        let cost =
+            |c: u32| ::model::nearest_f64(model.numbers().exact(model.columns()[c as usize].cost));
+        ((0..4).map(cost).collect::<Vec<_>>(), found.iter().map(|d| d.code).collect::<Vec<_>>())
+    };
+    let none = BTreeMap::new();
+    let (stops, colours): (&[&str], &[&str]) = (&["a", "b"], &["red", "blue"]);
+    assert_eq!(costs([stops, colours], &none), (vec![1.0, 2.0, 3.0, 4.0], vec![]));
+    assert_eq!(costs([colours, stops], &none), (vec![1.0, 3.0, 2.0, 4.0], vec!["data.turned"]));
+    // rows a b, columns a b; the columns of the model come as b a
+    assert_eq!(costs([stops, stops], &none), (vec![2.0, 1.0, 4.0, 3.0], vec!["data.either-way"]));
+    let given = BTreeMap::from([("w".to_owned(), "w, turned round".to_owned())]);
+    assert_eq!(costs([stops, stops], &given), (vec![3.0, 1.0, 4.0, 2.0], vec![]));
 }
 
 fn many_indices() -> String {

@@ -23,7 +23,9 @@ pub(super) struct Completed {
 pub(super) fn completed(tree: &Formulation) -> Completed {
     let mut out = Completed { tree: tree.clone(), habits: BTreeMap::new(), notes: Vec::new() };
     super::raised::join(&mut out.tree);
-    let declared = declared(&out.tree);
+    let mut declared = declared(&out.tree);
+    super::initial::part(&mut out.tree, &declared, &mut out.notes);
+    declared = self::declared(&out.tree);
     let aliases = aliases(&out.tree, &declared, &mut out.notes);
     if !aliases.is_empty() {
         rename(&mut out.tree, &aliases);
@@ -167,19 +169,26 @@ impl Completed {
             let free = |index: &Expression| {
                 bare_name(index).filter(|n| !declared.contains(&n.text)).map(|n| n.text.clone())
             };
-            let indices: Option<Vec<String>> = name.indices.iter().map(free).collect();
+            let known = |word: &String| self.habits.contains_key(word);
+            let indices: Option<Vec<(String, Span)>> = name
+                .indices
+                .iter()
+                .map(|index| Some(letters(free(index)?, index.span, &known)))
+                .collect::<Option<Vec<_>>>()
+                .map(|words| words.concat());
             let Some(indices) = indices.filter(|all| !all.is_empty()) else { continue };
-            if !line.clauses.is_empty() || !indices.iter().all(|i| self.habits.contains_key(i)) {
+            if !line.clauses.is_empty() || !indices.iter().all(|(index, _)| known(index)) {
                 continue;
             }
             let mut items = Vec::new();
-            for (text, index) in indices.iter().zip(&name.indices) {
-                let Some(set) = self.habits.get(text).cloned() else { continue };
+            for (text, span) in indices {
+                let Some(set) = self.habits.get(&text).cloned() else { continue };
                 let said = crate::print::expression(&set);
-                self.notes.push(message::inferred(text, &said, index.span));
-                let links = vec![(Relation::In, Expression { span: index.span, ..set })];
-                let kind = Kind::Chain(Box::new(index.clone()), links);
-                items.push(Expression { kind, span: index.span });
+                self.notes.push(message::inferred(&text, &said, span));
+                let links = vec![(Relation::In, Expression { span, ..set })];
+                let own = Name { text, indices: Vec::new(), superscript: None };
+                let index = Expression { kind: Kind::Name(own), span };
+                items.push(Expression { kind: Kind::Chain(Box::new(index), links), span });
             }
             line.clauses.push(Clause { items, such_that: Vec::new(), span: left.span });
         }
@@ -222,6 +231,15 @@ impl Completed {
         }
         self.tree.statements = statements;
     }
+}
+
+/// The word `kt` as `k` and `t`, where these are indices and it is none.
+fn letters(word: String, span: Span, known: &dyn Fn(&String) -> bool) -> Vec<(String, Span)> {
+    let single: Vec<String> = word.chars().map(String::from).collect();
+    if known(&word) || !single.iter().all(known) {
+        return vec![(word, span)];
+    }
+    single.into_iter().map(|letter| (letter, span)).collect()
 }
 
 fn bare_name(expression: &Expression) -> Option<&Name> {

@@ -12,6 +12,7 @@ mod expression;
 mod family;
 mod indices;
 mod infer;
+mod initial;
 mod names;
 mod order;
 mod raised;

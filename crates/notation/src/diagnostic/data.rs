@@ -43,6 +43,20 @@ pub(crate) fn assumed(name: &str, what: &str, span: Span) -> Diagnostic {
     )
 }
 
+pub(crate) fn turned(name: &str, span: Span) -> Diagnostic {
+    let message = format!("the table of {name} is turned round: its labels fit the sets only so");
+    Diagnostic::info("data.turned", span, message)
+}
+
+pub(crate) fn either_way(name: &str, table: &str, span: Span) -> Diagnostic {
+    let message = format!(
+        "the table of {name} fits its sets both ways; its rows are taken for the first index"
+    );
+    let mark = crate::turned::MARK;
+    Diagnostic::info("data.either-way", span, message)
+        .mend(format!("if its columns are, bind {name} to \u{201c}{table}{mark}\u{201d}"))
+}
+
 pub(crate) fn matched(name: &str, taken: &str, span: Span) -> Diagnostic {
     let message = format!(
         "{} is taken from {}, which suits it; the instance has no {0}",

@@ -112,6 +112,11 @@ pub(crate) fn no_set(index: &str, span: Span) -> Diagnostic {
     .mend(format!("write {} ∈ and its set", short(index)))
 }
 
+pub(crate) fn initial(datum: &str, variable: &str, span: Span) -> Diagnostic {
+    let message = format!("{datum} is given: the variable {variable} has that value there");
+    Diagnostic::info("name.initial", span, message)
+}
+
 pub(crate) fn taken_for(name: &str, plain: &str, span: Span) -> Diagnostic {
     Diagnostic::info("name.taken-for", span, format!("{name} is taken for {plain}"))
 }

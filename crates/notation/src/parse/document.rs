@@ -54,7 +54,10 @@ pub(crate) fn is_title(line: &str) -> bool {
     let words = |t: &crate::lex::token::Token| {
         let mark = matches!(t.kind, T::Minus | T::Comma | T::LeftParen | T::RightParen);
         let word = matches!(t.kind, T::Word | T::End | T::Min | T::Max);
-        (mark || word) && t.text.chars().count() != 1
+        let spelt = t.span.of(line);
+        let other = spelt.len() > 2 && spelt.chars().all(char::is_alphabetic);
+        let year = t.kind == T::Number && spelt.len() == 4;
+        (mark || word) && t.text.chars().count() != 1 || other || year
     };
     let named = sense && tokens.len() > 2 && tokens[1..].iter().all(words);
     let first_opens = !named && tokens.first().is_some_and(|t| opens_part(t.kind));
@@ -179,17 +182,21 @@ impl Parser<'_> {
         if let Some(at) = self.set_form_behind_data() {
             return Some(at);
         }
+        // \textbf{(P)} \quad \min …, behind data
+        let sense = |kind: T| matches!(kind, T::Min | T::Max | T::Minimise | T::Maximise);
+        if self.peek() == T::Text && sense(self.ahead(1)) {
+            return Some(self.at + 1);
+        }
         // (P) min …, behind data
         let named = self.peek() == T::LeftParen && self.tokens[self.at].gap.has(Gap::NEWLINE);
         let close = if named { self.closing(self.at)? } else { return None };
         let next = self.tokens.get(close + 1)?;
-        let sense = matches!(next.kind, T::Min | T::Max | T::Minimise | T::Maximise);
         // (x_i + y_i) min … is a product
         let dash = |t: &Token| matches!(t.kind, T::Minus | T::Slash);
         let inner = &self.tokens[self.at..close];
         let product = inner.iter().any(|t| t.kind.is_operator() && !dash(t))
             || inner.iter().any(dash) && inner.iter().any(|t| t.kind == T::Underscore);
-        (sense && !product && !next.gap.has(Gap::BLANK_LINE)).then_some(close + 1)
+        (sense(next.kind) && !product && !next.gap.has(Gap::BLANK_LINE)).then_some(close + 1)
     }
 
     /// A line with a relation behind the objective is a constraint, "subject to" or not.

@@ -6,17 +6,19 @@ use std::collections::BTreeMap;
 
 use instance::{Datum, Instance, number_text};
 use model::Number;
+use notation::Help;
 use notation::syntax::{Formulation, Kind};
 use record::message::Complaint;
 use record::place::{Finding, complaint};
 
-/// The code of such a complaint.
-pub(crate) const CODE: &str = "catalogue.assumption";
-
-/// What it means.
-pub(crate) const MEANING: &str = "A published formulation is right for some data: costs of 0 or more, say. With others \
-    its optimum may be that of another problem, and what is known of its bound need not hold. What a family assumes \
-    stands in the catalogue.";
+/// The code of such a complaint, and what it means. The example is data of `max-cut/sides`.
+pub(crate) const HELP: Help = Help {
+    code: "catalogue.assumption",
+    meaning: "A published formulation is right for some data: costs of 0 or more, say. With others \
+        its optimum may be that of another problem, and what is known of its bound need not hold. What a \
+        family assumes stands in the catalogue.",
+    example: " V\n a b c\n \n E by i, j\n a b\n b c\n a c\n \n w by i, j\n a b 3\n b c 2\n-a c -1\n+a c 1\n",
+};
 
 /// A complaint for each datum of the rival `from` that is below 0 somewhere and should not be, at its
 /// line in the text. `names` are those that the instance gives the data. O(cells).
@@ -37,7 +39,7 @@ pub(crate) fn broken(
         };
         let finding = Finding {
             error: false,
-            code: CODE.to_owned(),
+            code: HELP.code.to_owned(),
             span: line.span.range(),
             message: format!("the formulation is right for {}; here {below}", entry.assumption),
             mend: "Change the number, or do not trust the optimum and what is known of the bounds."

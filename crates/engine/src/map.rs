@@ -34,7 +34,7 @@ pub(crate) use node::node_detail;
 pub(crate) use relaxation::relaxation;
 pub(crate) use root::{root_report, stopped_root};
 pub(crate) use search::{conflict_report, nothing_searched, search_report};
-pub(crate) use settings::{complaints, settings};
+pub(crate) use settings::{HELP as RUN_HELP, complaints, settings};
 pub(crate) use typeset::of_typeset;
 
 /// How a relaxation or a search ended; one that goes on is stopped for now.

@@ -1,5 +1,6 @@
 //! Rules and limits of a run.
 
+use notation::Help;
 use record::file::nearest;
 use record::message::Complaint;
 use record::scenario::{BranchingRule, Run, Selection};
@@ -61,6 +62,14 @@ fn cuts(run: &Run) -> tree::Cuts {
     }
 }
 
+/// The code of a name in `priority` that is no variable. The example is the list.
+pub(crate) const HELP: Help = Help {
+    code: "run.priority",
+    meaning: "The list `priority` of a run says which variables are branched on first. A name in it that a \
+        rival does not have changes nothing for that rival; it stands there by a slip, or for another rival.",
+    example: " [run]\n-priority = [\"open\"]\n+priority = [\"y\"]\n",
+};
+
 /// What is to be said of the run's settings for a rival: variables that it does not have.
 pub(crate) fn complaints(run: &Run, model: &model::Model) -> Vec<Complaint> {
     let known: Vec<&str> = model.variables().iter().map(|v| v.name.as_str()).collect();
@@ -69,7 +78,7 @@ pub(crate) fn complaints(run: &Run, model: &model::Model) -> Vec<Complaint> {
         let near = nearest(name, &known).map(|near| format!("did you mean {near}? "));
         Complaint {
             error: false,
-            code: "run.priority".to_owned(),
+            code: HELP.code.to_owned(),
             line: 1,
             column: 1,
             start: 0,

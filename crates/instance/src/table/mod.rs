@@ -11,6 +11,7 @@ mod long;
 mod section;
 #[cfg(test)]
 mod tests;
+mod totals;
 mod wide;
 
 use std::collections::BTreeSet;
@@ -43,7 +44,7 @@ enum Kind {
 
 /// Reads tables. O(length · log).
 pub(crate) async fn read(text: &str, sink: &mut Complaints<'_>) -> Option<(Instance, Vec<String>)> {
-    let found = sections(text, &sink.pace()).await;
+    let mut found = sections(text, &sink.pace()).await;
     let entries: usize = found.iter().flat_map(|s| &s.rows).map(|row| row.cells.len()).sum();
     let longest = found.iter().flat_map(|s| &s.rows).find(|row| row.cells.len() >= MAX_CELLS);
     if entries > MAX_ENTRIES || found.len() > MAX_TABLES || longest.is_some() {
@@ -63,6 +64,12 @@ pub(crate) async fn read(text: &str, sink: &mut Complaints<'_>) -> Option<(Insta
         return None;
     }
     let mut draft = Draft::new();
+    for section in &mut found {
+        sink.spend(section.rows.len()).await;
+        if let Some(note) = totals::take_off(section) {
+            draft.note(note);
+        }
+    }
     // Wide tables that name no sets take those of the others, which therefore come first.
     let mut later = Vec::new();
     let rows = found.iter().flat_map(|section| section.rows.iter().skip(1));

@@ -38,6 +38,57 @@ fn read_well(text: &str) -> Vec<String> {
     shown(&reading.instance.unwrap())
 }
 
+/// Sheets written down before any was tried (invented data): clock times, decimal commas, units in
+/// headings, thousands, quoted labels, and a row of totals that stood as a label of its set.
+#[test]
+fn sheets_that_end_in_totals() {
+    let sheet = "Kunde\tBedarf [t]\tKosten [EUR]\tvon\tbis\nAltdorf\t1.250,5\t12,40\t07:45\t12:00\n\
+        Burg\t980\t9,10\t08:00\t16:30\nCelle\t2.400,25\t101,75\t6:15\t10:00\nSumme\t4.630,75\t123,25\t\t\n";
+    assert_eq!(
+        read_well(sheet),
+        [
+            "Kunde = Altdorf Burg Celle",
+            "Bedarf = Altdorf:1250.5 Burg:980 Celle:2400.25",
+            "Kosten = Altdorf:12.4 Burg:9.1 Celle:101.75",
+            "von = Altdorf:465 Burg:480 Celle:375",
+            "bis = Altdorf:720 Burg:990 Celle:600",
+        ]
+    );
+    let quoted = "Stop,Earliest,Latest,Service (min),Demand\nDepot,06:00,20:00,0,0\n\
+        \"Mill Lane, 4\",07:30,09:15,15,3\n\"High Street, 12\",08:00,11:45,10,5\n\"Quay\",6:45,10:00,20,2\n\
+        Total,,,45,10\n";
+    let found = read_well(quoted);
+    assert_eq!(found[0], "Stop = Depot Mill Lane, 4 High Street, 12 Quay");
+    assert_eq!(found[3], "Service = Depot:0 High Street, 12:10 Mill Lane, 4:15 Quay:20");
+    let said = |text: &str| {
+        let facts = read(text, None).facts;
+        facts.into_iter().filter(|fact| fact.contains("last row")).collect::<Vec<_>>()
+    };
+    assert_eq!(
+        said(quoted),
+        ["The last row, `Total`, was left out: it holds the sums of those above."]
+    );
+    // one that is no sum stays, and so does a label of another name
+    let other = quoted.replace("45,10\n", "45,11\n");
+    assert!(read_well(&other)[0].ends_with("Quay Total"), "{:?}", read_well(&other));
+    assert!(said(&other)[0].contains("is not the sum"), "{:?}", said(&other));
+    let named = quoted.replace("Total", "Towton");
+    assert!(read_well(&named)[0].ends_with("Quay Towton") && said(&named).is_empty());
+    let two = "Unit;p_min (MW);start-up (EUR);ramp\nG1;50;1 500,00;35,5\nG2;20;400,00;20\n\n\
+        Hour;Load (MW)\n00:00;120\n01:00;110,5\n";
+    assert_eq!(
+        read_well(two),
+        [
+            "Unit = G1 G2",
+            "Hour = 00:00 01:00",
+            "pMin = G1:50 G2:20",
+            "startUp = G1:1500 G2:400",
+            "ramp = G1:35.5 G2:20",
+            "Load = 00:00:120 01:00:110.5",
+        ]
+    );
+}
+
 fn places(reading: &Reading) -> Vec<(u32, u32, &'static str)> {
     reading.complaints.iter().map(|c| (c.line, c.column, c.code)).collect()
 }

@@ -31,7 +31,7 @@ pub(crate) fn broken(
     let Some(entry) = catalogue::find(from) else { return Vec::new() };
     let mut found = Vec::new();
     for name in catalogue::nonnegative(&entry.family) {
-        let datum = instance.get(names.get(&name).unwrap_or(&name));
+        let datum = instance.get(notation::table_named(names.get(&name).unwrap_or(&name)));
         let Some(below) = datum.and_then(|datum| below_zero(&name, datum)) else { continue };
         let declares = |e: &notation::syntax::Expression| matches!(&e.kind, Kind::Name(own) if own.text == name);
         let Some(line) = tree.data.iter().find(|line| line.left.iter().any(declares)) else {

@@ -61,3 +61,23 @@ fn optima_are_those_known_by_hand() {
     assert!(wrong.is_empty(), "{}", wrong.join("\n"));
     assert!(checked >= 40, "{checked} optima are known");
 }
+
+/// A sheet with clients in rows where the model names the sites first: turned round where the labels
+/// show it, and by choice where both sets have the same.
+#[test]
+fn a_table_is_taken_by_the_order_of_its_sets() {
+    let text = "Each site one client\ndata\n  I\n  J\n  c_{i,j} ∀ i ∈ I, j ∈ J\nminimise\n  \
+        Σ_{i ∈ I} Σ_{j ∈ J} c_{i,j} x_{i,j}\nsubject to\n  Σ_{j ∈ J} x_{i,j} = 1 ∀ i ∈ I (one)\n  \
+        x_{i,j} ∈ {0,1} ∀ i ∈ I, j ∈ J\n";
+    let found = |sets: &str, cells: &str, bind: &[(&str, &str)]| {
+        let bind = bind.iter().map(|&(a, b)| (a.to_owned(), b.to_owned())).collect();
+        optimum(text.to_owned(), format!("{sets}\n\nc by rows, columns\n{cells}"), &bind)
+    };
+    let apart = "I\np q\n\nJ\na b";
+    assert_eq!(found(apart, "p a 4\np b 5\nq a 1\nq b 6\n", &[]), Some(5.0));
+    assert_eq!(found(apart, "a p 4\na q 5\nb p 1\nb q 6\n", &[]), Some(6.0));
+    let alike = "I\na b\n\nJ\nb a";
+    let cells = "a a 4\na b 5\nb a 1\nb b 6\n";
+    assert_eq!(found(alike, cells, &[]), Some(5.0));
+    assert_eq!(found(alike, cells, &[("bind c", "c, turned round")]), Some(6.0));
+}

@@ -52,6 +52,7 @@ pub use mathml::typeset;
 pub use parse::{NESTING_LIMIT, Parse, TEXT_LIMIT, parse};
 pub use place::{Span, line_column, utf16_offset, utf16_range};
 pub use print::print;
+pub use turned::table_named;
 
 /// Text and instance to a model with warnings, in one go. `names` maps names of the
 /// formulation to names of the instance where they differ; `states` sets families *in*,

@@ -24,6 +24,12 @@ pub(crate) enum Order {
     Either,
 }
 
+/// The name of the table that a person chose, turned round or not.
+#[must_use]
+pub fn table_named(given: &str) -> &str {
+    named(given).0
+}
+
 /// The name of the table, and whether it is to be turned round.
 pub(crate) fn named(given: &str) -> (&str, bool) {
     given.strip_suffix(MARK).map_or((given, false), |name| (name, true))

@@ -34,7 +34,7 @@ struct Case {
     message: &'static str,
 }
 
-const CASES: [Case; 6] = [
+const CASES: [Case; 7] = [
     Case {
         code: "lint.empty-rows",
         with: ["L A; L B", "X COST 1 A 1; Y COST 2 A 1", "R A 4 B 3", "UP D X 4; UP D Y 4"],
@@ -96,6 +96,22 @@ const CASES: [Case; 6] = [
         ],
         message: "has a twin",
     },
+    Case {
+        code: "lint.within-clique",
+        with: [
+            "L A; L B",
+            "X COST 1 A 1 B 1; Y COST 2 A 1 B 1; Z COST 3 B 1",
+            "R A 1 B 1",
+            "BV D X; BV D Y; BV D Z",
+        ],
+        without: [
+            "L A; L B",
+            "X COST 1 A 1 B 1; Y COST 2 A 1; Z COST 3 B 1",
+            "R A 1 B 1",
+            "BV D X; BV D Y; BV D Z",
+        ],
+        message: "A within B",
+    },
 ];
 
 #[test]
@@ -126,7 +142,7 @@ fn no_pitfall_of_mps_is_without_a_case() {
         .into_iter()
         .filter(|p| p.chars().all(|c| c == '_' || c.is_ascii_lowercase()))
         .collect();
-    assert_eq!(parts, ["big_m", "columns", "empty", "twins"]);
+    assert_eq!(parts, ["big_m", "cliques", "columns", "empty", "twins"]);
     let codes: BTreeSet<&str> = CASES.iter().map(|case| case.code).collect();
-    assert_eq!(codes.len(), 6);
+    assert_eq!(codes.len(), 7);
 }

@@ -135,6 +135,49 @@ pub(crate) fn twin_rows(
     Diagnostic::warning("lint.twin-rows", span, message)
 }
 
+/// Rows of an edge within the row of a clique.
+pub(crate) fn within_clique(
+    family: &str,
+    (rows, one, other): (usize, &str, &str),
+    span: Span,
+) -> Diagnostic {
+    let message = format!(
+        "{rows} of the rows of ({}) lie within a larger row, such as {} within {}: what they forbid is \
+         forbidden already",
+        short(family),
+        short_tuple(one),
+        short_tuple(other)
+    );
+    Diagnostic::info("lint.within-clique", span, message)
+}
+
+/// A variable that is whole by itself: how many columns, whether others must be whole, whether its
+/// value follows from theirs.
+pub(crate) fn needless(
+    name: &str,
+    (columns, others, follows): (usize, bool, bool),
+    span: Span,
+) -> Diagnostic {
+    let name = short(name);
+    let message = match (others, follows) {
+        (true, true) => format!(
+            "on this instance {name} need not be declared whole: where the other variables are whole, an equation makes each of \
+             its {columns} columns so"
+        ),
+        (true, false) => format!(
+            "on this instance {name} need not be declared whole: where the other variables are whole, the rows of its {columns} \
+             columns are totally unimodular, and a best plan has them whole"
+        ),
+        (false, _) => format!(
+            "on this instance {name} need not be declared whole: the rows of its {columns} columns are totally unimodular, and \
+             the relaxation has a best plan with all of them whole"
+        ),
+    };
+    Diagnostic::info("lint.needless-integrality", span, message).mend(
+        "give it its range in place of whole numbers, and fewer variables are left to branch on",
+    )
+}
+
 /// Rows without entries.
 pub(crate) fn empty_rows(family: &str, (rows, example): (usize, &str)) -> Diagnostic {
     let message = if rows == 1 {

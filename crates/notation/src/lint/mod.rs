@@ -7,6 +7,8 @@
 //! | `big_m.rs` | rows switched by a constant over 10⁴, with the smallest that bounds prove |
 //! | `columns.rs` | variables bounded nowhere; directions without end |
 //! | `twins.rs` | duplicate rows and columns |
+//! | `cliques.rs` | rows of an edge within the row of a clique |
+//! | `needless.rs` | variables that are whole by themselves |
 //! | `empty.rs` | rows without entries, which only a file can hold |
 //!
 //! A pitfall is told only where the rows prove what is said of it. What the expansion sees by
@@ -14,9 +16,11 @@
 
 mod big_m;
 mod bounds;
+mod cliques;
 mod columns;
 mod empty;
 mod facts;
+mod needless;
 mod order;
 mod pairs;
 mod twins;
@@ -77,6 +81,8 @@ pub fn lint(tree: &Formulation, checked: &Checked, model: &Model) -> Vec<Diagnos
         big_m::lint(&subject),
         columns::lint(&subject),
         twins::lint(&subject),
+        cliques::lint(&subject),
+        needless::lint(&subject),
     ];
     tidy(found.concat())
 }
@@ -94,6 +100,7 @@ pub fn lint_rows(model: &Model) -> Vec<Diagnostic> {
         big_m::lint(&subject),
         columns::lint(&subject),
         twins::lint(&subject),
+        cliques::lint(&subject),
         empty::lint(&subject),
     ];
     tidy(found.concat())

@@ -2,7 +2,7 @@
 
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit, visit_chromium};
 use serde_json::json;
 
 use crate::data::TWO;
@@ -28,7 +28,7 @@ async fn two_days(browser: &Browser) -> Outcome<()> {
 
 #[tokio::test(flavor = "multi_thread")]
 async fn a_study_is_asked_of_the_chosen_instance_or_of_all() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         two_days(browser).await?;
         let whose = "return [...document.querySelectorAll('[data-study=ladder] [data-testid=study-part] summary')]
             .map((summary) => summary.textContent.split(' – ')[0])";

@@ -1,5 +1,6 @@
 //! What a run begins with and what changes during it: a plan, the settings of a preset, rules.
 
+use fantoccini::key::Key;
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::visit::{Source, visit};
@@ -143,7 +144,7 @@ async fn a_rule_is_changed_during_a_run_and_replayed_from_a_link() -> Outcome<()
         let said = acts(browser).await?;
         assert!(said[0].ends_with("nodes: next node: depth first"), "{said:?}");
         let nodes = browser.select(&part("A", "change-nodes")).await?;
-        nodes.send_keys("40\t").await?;
+        nodes.send_keys(&format!("40{}", char::from(Key::Tab))).await?;
         let two = async || Ok(acts(browser).await?.len() == 2);
         browser.until("the limit is listed", SOON, two).await?;
         button(browser, "A", "run").await?.click().await?;

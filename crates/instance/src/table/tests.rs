@@ -74,6 +74,12 @@ fn sheets_that_end_in_totals() {
     assert!(said(&other)[0].contains("is not the sum"), "{:?}", said(&other));
     let named = quoted.replace("Total", "Towton");
     assert!(read_well(&named)[0].ends_with("Quay Towton") && said(&named).is_empty());
+    let needed = quoted.replace("Total,,,45,10", "Demand (t),1,2,3,4");
+    assert!(
+        said(&needed)[0].contains("`Demand (t)` and was read like the others"),
+        "{:?}",
+        said(&needed)
+    );
     let two = "Unit;p_min (MW);start-up (EUR);ramp\nG1;50;1 500,00;35,5\nG2;20;400,00;20\n\n\
         Hour;Load (MW)\n00:00;120\n01:00;110,5\n";
     assert_eq!(

@@ -1,5 +1,6 @@
 //! A last row of totals, as spreadsheets end: it is no label of its set, and is left out where the
-//! numbers above it show that it is their sum.
+//! numbers above it show that it is their sum. A last row headed as what the columns need or hold, as
+//! a plan of shipments ends, is told.
 
 use crate::cells::is_blank;
 use crate::complaint::excerpt;
@@ -23,6 +24,22 @@ const WORDS: [&str; 12] = [
     "totaal",
 ];
 
+/// Words that head a last row which belongs to the columns: what each of them needs, or holds.
+const MARGINS: [&str; 12] = [
+    "demand",
+    "demands",
+    "requirement",
+    "requirements",
+    "supply",
+    "capacity",
+    "bedarf",
+    "nachfrage",
+    "kapazität",
+    "angebot",
+    "demande",
+    "capacité",
+];
+
 /// The fewest rows below the heading, the last one among them.
 const FEWEST: usize = 3;
 
@@ -31,11 +48,22 @@ const FEWEST: usize = 3;
 pub(super) fn take_off(section: &mut Section) -> Option<String> {
     let last = section.rows.last()?;
     let label = last.cells.first()?.text.to_string();
-    let plain = label.trim().trim_end_matches([':', '.']).to_lowercase();
-    if section.rows.len() <= FEWEST || !WORDS.contains(&plain.as_str()) {
+    // without a unit in brackets
+    let plain = label.split(['(', '[']).next().unwrap_or_default().trim();
+    let plain = plain.trim_end_matches([':', '.']).to_lowercase();
+    if section.rows.len() <= FEWEST {
         return None;
     }
     let label = excerpt(&label);
+    if MARGINS.contains(&plain.as_str()) {
+        return Some(format!(
+            "The last row is headed `{label}` and was read like the others: if it holds a number for each \
+             column, make it a table of its own."
+        ));
+    }
+    if !WORDS.contains(&plain.as_str()) {
+        return None;
+    }
     if !is_sum(section) {
         return Some(format!(
             "The last row is headed `{label}` but is not the sum of those above: it was read like the \

@@ -10,7 +10,7 @@ use record::results::RivalResult;
 use record::scenario::{Scenario, letter};
 use record::study::{Line, Report};
 use report::csv::csv;
-use report::decision::{self, Evidence, Interval};
+use report::decision::{self, Evidence};
 use report::study::over_instances;
 
 use crate::ending::Ending;
@@ -70,25 +70,20 @@ fn set(
     results: &[RivalResult],
     studies: &[(String, Report)],
 ) -> String {
-    let facts = facts(scenario);
-    let statements: Vec<String> = (0..scenario.rivals.len())
-        .map(|rival| {
-            engine::notation_text(scenario, rival).map_or_else(|_| String::new(), |it| it.text)
-        })
-        .collect();
+    let stated = engine::stated(scenario);
+    let statements: Vec<String> = stated.rivals.iter().map(|one| one.text.clone()).collect();
     let typeset: Vec<String> =
-        statements.iter().map(|text| decision::mathml(&engine::typeset(text))).collect();
-    let unit = scenario.instance.as_ref().map(|text| engine::instance_report(text).unit);
+        stated.rivals.iter().map(|one| decision::mathml(&one.typeset)).collect();
     let link = link::pack(&file::print(scenario)).unwrap_or_default();
     let link = if link.len() > link::OFTEN_CUT { String::new() } else { link };
     let evidence = Evidence {
         scenario,
         results,
         studies,
-        facts: &facts,
+        facts: &stated.facts,
         statements: &statements,
         typeset: &typeset,
-        unit: &unit.unwrap_or_default(),
+        unit: &stated.unit,
         engine: engine::VERSION,
         link: &link,
     };
@@ -100,41 +95,13 @@ fn set(
     }
 }
 
-/// The record as one object: its pieces, and the figures that they are made of.
+/// The record as one object, with the figures that it is made of in full.
 fn object(evidence: &Evidence<'_>) -> String {
     let studies: Vec<Line<'_>> =
         evidence.studies.iter().map(|(instance, report)| report.line(instance)).collect();
-    let record: serde_json::Value =
+    let mut object: serde_json::Value =
         serde_json::from_str(&decision::json(evidence)).unwrap_or_default();
-    let intervals: Vec<serde_json::Value> =
-        decision::intervals(evidence).iter().map(|one| interval(one, evidence.unit)).collect();
-    let object = serde_json::json!({
-        "hullward_record": 1,
-        "engine": evidence.engine,
-        "intervals": intervals,
-        "scenario": file::print(evidence.scenario),
-        "results": evidence.results,
-        "studies": studies,
-        "record": record,
-    });
+    object["results"] = serde_json::json!(evidence.results);
+    object["studies"] = serde_json::json!(studies);
     format!("{object:#}\n")
-}
-
-/// Between which values the best possible plan of an instance lies: `bound` is proved in exact arithmetic,
-/// `plan` is the best that was found, both in `unit`.
-fn interval(one: &Interval, unit: &str) -> serde_json::Value {
-    serde_json::json!({
-        "instance": one.instance,
-        "sense": if one.maximise { "maximise" } else { "minimise" },
-        "bound": one.bound,
-        "plan": one.plan,
-        "unit": unit,
-        "closed": one.is_closed(),
-    })
-}
-
-/// What is understood of the first instance.
-fn facts(scenario: &Scenario) -> Vec<String> {
-    let report = scenario.instance.as_ref().map(engine::instance_report);
-    report.map_or_else(Vec::new, |report| report.facts)
 }

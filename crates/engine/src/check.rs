@@ -104,7 +104,7 @@ fn names(names: &[&str]) -> Vec<String> {
 
 /// Journal notation set as mathematics; without rows where there is none.
 #[must_use]
-pub fn typeset(text: &str) -> Typeset {
+pub(crate) fn typeset(text: &str) -> Typeset {
     let parse = notation::parse(text);
     let (checked, _) = notation::check(&parse.tree);
     of_typeset(text, &notation::typeset(&parse.tree, text), &checked)

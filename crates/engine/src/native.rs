@@ -271,6 +271,7 @@ impl Drive {
                 | Reply::Audited(_)
                 | Reply::Log(_)
                 | Reply::Bound(..)
+                | Reply::Stated(_)
                 | Reply::Memory { .. } => {}
             }
         }

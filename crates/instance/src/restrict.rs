@@ -29,6 +29,15 @@ impl Instance {
         self.restricted(&kept)
     }
 
+    /// The elements that [`Self::part`] keeps for each count and seed; two parts that keep the same are the
+    /// same instance. `O(size of the instance)` and of each part.
+    #[must_use]
+    pub fn kept_by(&self, parts: &[(usize, u64)]) -> Vec<BTreeSet<String>> {
+        let sets = sets(self);
+        let kept = |&(count, seed): &(usize, u64)| Kept::within(&sets, self, count, Some(seed)).0;
+        parts.iter().map(kept).collect()
+    }
+
     fn restricted(&self, kept: &Kept) -> Self {
         let mut part = self.clone();
         for (_, datum) in &mut part.data {
@@ -64,7 +73,10 @@ struct Kept(BTreeSet<String>);
 
 impl Kept {
     fn of(instance: &Instance, count: usize, seed: Option<u64>) -> Self {
-        let sets = sets(instance);
+        Self::within(&sets(instance), instance, count, seed)
+    }
+
+    fn within(sets: &[Vec<String>], instance: &Instance, count: usize, seed: Option<u64>) -> Self {
         let mut kept = BTreeSet::new();
         for (place, set) in sets.iter().enumerate() {
             let within = |other: usize| {

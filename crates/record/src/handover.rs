@@ -1,6 +1,8 @@
-//! A rival handed over to others by the page.
+//! What the page hands over to others: a rival, and what a decision record repeats of its scenario.
 
 use serde::{Deserialize, Serialize};
+
+use crate::typeset::Typeset;
 
 /// In what form.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize)]
@@ -20,4 +22,24 @@ pub struct Written {
     pub text: String,
     /// What who takes it should know, one sentence each.
     pub notes: Vec<String>,
+}
+
+/// What a decision record repeats of its scenario.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Stated {
+    /// Each rival as it is written, in order; nothing for a model that has no notation.
+    pub rivals: Vec<Statement>,
+    /// What is understood of the first instance, in sentences.
+    pub facts: Vec<String>,
+    /// The unit of the objective; empty where the data name none.
+    pub unit: String,
+}
+
+/// A formulation.
+#[derive(Debug, Clone, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub struct Statement {
+    /// In journal notation.
+    pub text: String,
+    /// Set as mathematics.
+    pub typeset: Typeset,
 }

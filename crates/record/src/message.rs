@@ -5,7 +5,7 @@ use serde::{Deserialize, Serialize};
 
 use crate::event::{Branching, Event, NodeNumber, NodeState};
 use crate::ground::Evidence;
-use crate::handover::{Form, Written};
+use crate::handover::{Form, Stated, Written};
 use crate::results::{
     AuditReport, ConflictReport, ErrorReport, FamilyReport, Proof, RootReport, SearchReport,
 };
@@ -42,6 +42,9 @@ pub enum Request {
     Explain(String),
     /// Hand a rival over to others, all at once. Answered by [`Reply::Written`].
     Write(Form, Box<LaneJob>),
+    /// Say what a decision record repeats of a scenario, given as text. Answered by
+    /// [`Reply::Stated`].
+    State(String),
     /// Say which data each rival takes from an instance. Answered by [`Reply::Bound`].
     Bind(Box<BindJob>),
     /// Make a study of all rivals. Answered by [`Reply::Progress`] and [`Reply::Studied`].
@@ -200,6 +203,8 @@ pub enum Reply {
     Explained(Explanation),
     /// A rival handed over.
     Written(Box<Written>),
+    /// What a decision record repeats of its scenario.
+    Stated(Box<Stated>),
     /// Which data the rivals take from the instance, by their names; and where none of them finds all of
     /// its own, the families of the catalogue that do.
     Bound(Vec<Binding>, Vec<Suit>),

@@ -11,7 +11,7 @@ mod mathml;
 mod reopen;
 mod svg;
 
-pub use choice::{Interval, intervals};
+use choice::intervals;
 use cited::{Cited, Marks, plain};
 pub(crate) use html::escaped;
 pub use mathml::mathml;
@@ -86,12 +86,14 @@ pub fn markdown(evidence: &Evidence<'_>) -> String {
     markdown::document(&blocks(evidence))
 }
 
-/// The record as a JSON array, a piece of it each: an object whose only field is its kind ("title",
-/// "heading", "subheading", "text", "notes", "list", "table", "figure" or "code"). A table has `head` and
-/// `rows`, a figure is SVG.
+/// The record as one JSON object: `hullward_record`, `engine`, `scenario`, `intervals` (between which
+/// values the best possible plan of an instance lies: `bound` is proved in exact arithmetic, `plan` the
+/// best that was found, both in `unit`) and `record`, an array of its pieces. A piece is an object whose
+/// only field is its kind ("title", "heading", "subheading", "text", "notes", "list", "table", "figure" or
+/// "code"). A table has `head` and `rows`, a figure is SVG.
 #[must_use]
 pub fn json(evidence: &Evidence<'_>) -> String {
-    json::document(&blocks(evidence))
+    json::object(evidence, &intervals(evidence), &blocks(evidence))
 }
 
 /// The drawings of the record as one SVG, each below its heading; where there is none it says so.

@@ -1,10 +1,13 @@
 //! What studies found, as sections of words and tables: the command prints them, the page and the
 //! decision record set them. Every sentence is made from the figures of the report.
 
+mod chart;
 mod cuts;
 mod equivalence;
 mod families;
+mod figure;
 mod growth;
+mod growth_chart;
 mod hasse;
 mod infeasibility;
 mod ladder;
@@ -20,7 +23,8 @@ use record::results::SolutionEntry;
 use record::study::Report;
 
 use crate::number::{count, short};
-pub use hasse::{Figure, overview};
+pub use figure::Figure;
+pub use hasse::overview;
 pub use order::over_instances;
 
 /// A part of the evidence.

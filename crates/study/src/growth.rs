@@ -6,7 +6,7 @@
 //! distinguishable is said to be so. Each run is a cell of its own, so that a batch queue can make
 //! them one by one; [`summed_up`] takes the cells however they were made.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 use std::rc::Rc;
 
 use catalogue::{Class, generate};
@@ -39,7 +39,7 @@ pub async fn growth(desk: Rc<Desk>, grounds: Vec<Ground>, plan: Plan, cell: Opti
     let family = generated(first, &plan);
     let mut out = blank(&grounds, &plan, family.as_deref());
     let mut number = 0;
-    for setting in settings(&plan, family.as_ref().map_or(grounds.len(), |_| 0)) {
+    for setting in chosen(&plan, &grounds, family.is_some()) {
         let data = cell.is_none_or(|cell| is_of(cell, number, first.len()));
         let instance = data.then(|| family.as_deref().and_then(|family| made(family, &setting)));
         for rival in first {
@@ -72,8 +72,14 @@ fn on<'g>(grounds: &'g [Ground], setting: &Setting, letter: &str) -> Option<&'g 
 pub fn cells(grounds: &[Ground], plan: &Plan) -> u32 {
     let Some(first) = grounds.first() else { return 0 };
     let generated = generated(&first.subjects, plan).is_some();
-    let instances = settings(plan, if generated { 0 } else { grounds.len() }).len();
+    let instances = chosen(plan, grounds, generated).len();
     u32::try_from(instances * first.subjects.len()).unwrap_or(u32::MAX)
+}
+
+/// How many of the instances that were asked for would be others again.
+fn again(grounds: &[Ground], plan: &Plan, generated: bool) -> u32 {
+    let asked = settings(plan, if generated { 0 } else { grounds.len() }).len();
+    u32::try_from(asked - chosen(plan, grounds, generated).len()).unwrap_or(u32::MAX)
 }
 
 /// Whether a cell is one of the rivals' of the instance that begins at `first`.
@@ -98,6 +104,7 @@ fn blank(grounds: &[Ground], plan: &Plan, family: Option<&str>) -> Growth {
         production: plan.growth.production.unwrap_or(extent.max(largest)),
         seed: plan.seed,
         of: cells(grounds, plan),
+        again: again(grounds, plan, family.is_some()),
         ..Growth::default()
     }
 }
@@ -108,6 +115,39 @@ fn generated(subjects: &[Subject], plan: &Plan) -> Option<String> {
     let family = subjects.first()?.entry.as_ref()?.family.clone();
     let same = |subject: &Subject| subject.entry.as_ref().is_some_and(|one| one.family == family);
     (!plan.growth.classes.is_empty() && subjects.iter().all(same)).then_some(family)
+}
+
+/// The instances of a study, each once: a part that keeps the same elements as one before it is that
+/// instance again, and no part is larger than the instance.
+fn chosen(plan: &Plan, grounds: &[Ground], generated: bool) -> Vec<Setting> {
+    let all = settings(plan, if generated { 0 } else { grounds.len() });
+    if generated {
+        return all;
+    }
+    let mut out: Vec<(usize, Setting)> = Vec::new();
+    for (place, ground) in grounds.iter().enumerate() {
+        let own = all.iter().enumerate().filter(|(_, setting)| setting.ground == place);
+        let Some(source) = ground.subjects.iter().find_map(|subject| subject.source.as_ref())
+        else {
+            out.extend(own.map(|(order, setting)| (order, setting.clone())));
+            continue;
+        };
+        let extent = u32::try_from(source.instance.extent()).unwrap_or(u32::MAX);
+        let own: Vec<(usize, Setting)> = own
+            .map(|(order, setting)| {
+                (order, Setting { size: setting.size.min(extent), ..setting.clone() })
+            })
+            .collect();
+        let parts: Vec<(usize, u64)> =
+            own.iter().map(|(_, setting)| (setting.size as usize, setting.seed)).collect();
+        let mut seen = BTreeSet::new();
+        let kept = source.instance.kept_by(&parts).into_iter();
+        out.extend(
+            own.into_iter().zip(kept).filter_map(|(one, kept)| seen.insert(kept).then_some(one)),
+        );
+    }
+    out.sort_by_key(|(order, _)| *order);
+    out.into_iter().map(|(_, setting)| setting).collect()
 }
 
 /// Parts of so many instances; with none of them generated instances of each class.

@@ -157,6 +157,32 @@ fn what_comes_out_is_the_same_for_every_slice() {
     }
 }
 
+/// On four stops the sizes 6, 8, 10 and 12 were the whole instance twenty times over, each time counted as
+/// another: the rivals were told apart by one instance. No part is larger than the instance, and each counts
+/// once.
+#[test]
+fn parts_that_are_the_same_instance_count_once() {
+    let study = |sizes: &[u32]| {
+        let data = stops(4);
+        let subjects =
+            vec![shipped("A", "atsp/labels", &data), shipped("B", "atsp/subtours", &data)];
+        let grounds = vec![crate::Ground { title: String::new(), subjects }];
+        let growth = crate::GrowthPlan { sizes: sizes.to_vec(), ..Default::default() };
+        let plan = Plan { growth, ..Plan::default() };
+        let asked = 5 * sizes.len();
+        (asked, driven(50_000, |desk| crate::growth::growth(desk, grounds, plan, None)))
+    };
+    let (asked, whole) = study(&[6, 8, 10, 12]);
+    assert_eq!((whole.of, whole.cells.len(), whole.again as usize), (2, 2, asked - 1));
+    assert!(whole.cells.iter().all(|cell| cell.size == 4), "{whole:?}");
+    assert_eq!((whole.pairs[0].instances, whole.pairs[0].distinguishable), (1, false));
+    // Of four stops there are four parts of three; five seeds cannot draw five.
+    let (asked, parts) = study(&[3, 4]);
+    assert_eq!(parts.pairs[0].instances as usize + parts.again as usize, asked);
+    assert!(parts.pairs[0].instances <= 5, "{parts:?}");
+    assert_eq!(parts.of as usize, parts.cells.len());
+}
+
 /// A run that is stopped for its work stops at the same step for every slice, is no solved one, and has
 /// done about that much.
 #[test]

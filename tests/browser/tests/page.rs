@@ -104,3 +104,6 @@ mod hands;
 
 #[path = "page/accessible.rs"]
 mod accessible;
+
+#[path = "page/recording.rs"]
+mod recording;

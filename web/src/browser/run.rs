@@ -7,7 +7,7 @@ use std::collections::VecDeque;
 use gloo_timers::callback::Timeout;
 use record::message::{Acted, Envelope, LaneJob, Reply, Request, RunNumber};
 use record::opinion::Opinion;
-use record::results::{Judgement, SearchReport, Status};
+use record::results::{AuditReport, Judgement, SearchReport, Status};
 use record::scenario::Rival;
 use report::audit::sentences;
 
@@ -203,11 +203,7 @@ impl LaneRun {
             }
             Reply::Acted(acted) => self.acted(&acted),
             Reply::Log(Err(why)) => Some(LaneAction::Notice(format!("No log was saved: {why}."))),
-            Reply::Audited(found) => {
-                let words = sentences(&found).join(" ");
-                let proved = found.judgement == Judgement::Proved;
-                Some(if proved { LaneAction::Proved(words) } else { LaneAction::Unproved(words) })
-            }
+            Reply::Audited(found) => Some(judged(&found)),
             Reply::Relaxation(Err(why)) => Some(LaneAction::Second(Opinion::Silent(why))),
             Reply::Checked(_)
             | Reply::Explained(_)
@@ -221,6 +217,7 @@ impl LaneRun {
             | Reply::Ready { .. }
             | Reply::InstanceRead(_)
             | Reply::Guide(_)
+            | Reply::Stated(_)
             | Reply::Catalogue(_) => None,
         }
     }
@@ -275,6 +272,16 @@ impl LaneRun {
         }
         self.run_at_root = false;
         Some(LaneAction::Asked(Phase::Running))
+    }
+}
+
+/// What came of proving a search again.
+fn judged(found: &AuditReport) -> LaneAction {
+    let words = sentences(found).join(" ");
+    if found.judgement == Judgement::Proved {
+        LaneAction::Proved(words)
+    } else {
+        LaneAction::Unproved(words)
     }
 }
 

@@ -15,6 +15,7 @@ pub(crate) mod lane;
 pub(crate) mod lens;
 pub(crate) mod mps;
 mod naming;
+pub(crate) mod on_record;
 pub(crate) mod outcomes;
 pub(crate) mod outline;
 pub(crate) mod places;

@@ -4,10 +4,8 @@ use std::collections::BTreeMap;
 use std::rc::Rc;
 
 use record::file;
-use record::results::RivalResult;
 use record::scenario::{Field, Scenario, Study};
 use record::study::Report;
-use report::decision::{self, Evidence};
 use report::study::over_instances;
 use yew::Reducible;
 
@@ -105,7 +103,7 @@ pub(crate) struct Found {
 
 impl Found {
     /// Its reports, each with its instance's name on record.
-    fn named(&self) -> impl Iterator<Item = (String, Report)> + '_ {
+    pub(crate) fn named(&self) -> impl Iterator<Item = (String, Report)> + '_ {
         self.parts.iter().flat_map(|part| {
             let reports = part.reports.iter().flatten();
             reports.map(|report| (part.instance.clone(), report.clone()))
@@ -202,44 +200,6 @@ pub(crate) fn scenario_of(document: &Document, kind: &str) -> String {
     })
 }
 
-/// The decision record of what the page has found: HTML, or Markdown. Answers to an earlier state of
-/// the scenario are left out.
-pub(crate) fn on_record(
-    document: &Document,
-    results: &[RivalResult],
-    shelf: &Shelf,
-    html: bool,
-) -> String {
-    let mut studies = Vec::new();
-    for (kind, ..) in KINDS {
-        let found = shelf.found.get(kind).filter(|found| *found.of == *scenario_of(document, kind));
-        studies.extend(found.iter().flat_map(|found| found.named()));
-    }
-    let over = over_instances(&studies);
-    studies.extend(over.into_iter().map(|report| (String::new(), report)));
-    let scenario = document.scenario();
-    let texts = scenario.rivals.iter().map(|rival| {
-        let shipped = document.entry(rival).map(|entry| entry.text.clone());
-        rival.text.clone().or(shipped).unwrap_or_default()
-    });
-    let statements: Vec<String> = texts.collect();
-    let link = record::link::pack(&document.file()).unwrap_or_default();
-    let facts = document.accepted.as_ref().map(|accepted| accepted.report.facts.clone());
-    let unit = document.accepted.as_ref().map(|accepted| accepted.report.unit.clone());
-    let evidence = Evidence {
-        scenario: &scenario,
-        results,
-        studies: &studies,
-        facts: &facts.unwrap_or_default(),
-        statements: &statements,
-        typeset: &[],
-        unit: &unit.unwrap_or_default(),
-        engine: env!("CARGO_PKG_VERSION"),
-        link: if link.len() > record::link::OFTEN_CUT { "" } else { &link },
-    };
-    if html { decision::html(&evidence) } else { decision::markdown(&evidence) }
-}
-
 impl Document {
     /// A study belongs to the scenario from now on.
     pub(crate) fn with_study(&mut self, kind: &str) {
@@ -304,47 +264,6 @@ mod tests {
         document.with_study("ladder");
         document.with_study("ladder");
         assert_eq!(document.scenario().studies.len(), demo().studies.len() + 1);
-    }
-
-    #[test]
-    fn a_record_holds_the_rivals_and_no_stale_answer() {
-        let document = Document::open(demo());
-        let mut shelf = Shelf::default();
-        let left =
-            |why: &str| Ok(vec![Report::Left { kind: "order".to_owned(), why: why.to_owned() }]);
-        let now = scenario_of(&document, "order");
-        let found = |of: &str, reports| {
-            let part = Part { instance: String::new(), reports };
-            Rc::new(Found { of: of.into(), parts: vec![part], left: 0 })
-        };
-        shelf.found.insert("order", found(&now, left("fresh")));
-        shelf.found.insert("ladder", found("", left("stale")));
-        let text = on_record(&document, &[], &shelf, false);
-        assert!(text.contains("left out: fresh") && !text.contains("stale"), "{text}");
-        assert!(text.contains("- B: ") && text.contains("#s1."), "{text}");
-        assert!(on_record(&document, &[], &shelf, true).starts_with("<!doctype html>"));
-    }
-
-    #[test]
-    fn orders_on_several_instances_are_summed_up_on_the_page_and_in_the_record() {
-        use record::study::{Order, OrderLevel, Relation};
-        let document = Document::open(demo());
-        let rivals = ["A".to_owned(), "B".to_owned()];
-        let (relation, level) = (Relation::NeverWeaker, OrderLevel::Observed);
-        let order = Order { rivals, relation, level, ..Order::default() };
-        let part = |day: &str| Part {
-            instance: day.to_owned(),
-            reports: Ok(vec![Report::Order(Box::new(order.clone()))]),
-        };
-        let of: Rc<str> = scenario_of(&document, "order").into();
-        let found = Found { of, parts: vec![part("Monday"), part("Tuesday")], left: 0 };
-        assert_eq!(found.over().len(), 1);
-        let one = Found { parts: vec![part("Monday")], ..found.clone() };
-        assert_eq!(one.over(), []);
-        let mut shelf = Shelf::default();
-        shelf.found.insert("order", Rc::new(found));
-        let text = on_record(&document, &[], &shelf, false);
-        assert!(text.contains("A stronger on 2 of 2 instances"), "{text}");
     }
 
     #[test]

@@ -26,7 +26,7 @@ pub(crate) fn section(section: &Section) -> Html {
                 <p class="prose">{ sentence.clone() }</p>
             }
             if let Some(figure) = &section.figure {
-                <div class="scroll">{ drawn(figure) }</div>
+                <div class="scroll drawn">{ drawn(figure) }</div>
             }
             if let Some(found) = &section.table {
                 <div class="scroll" tabindex="0" role="group" aria-label={section.heading.clone()}>
@@ -40,24 +40,36 @@ pub(crate) fn section(section: &Section) -> Html {
     }
 }
 
-/// The order of the rivals; it is told in words above it. Attributes, not styles: the page's policy
-/// refuses styles that stand in an element.
+/// A drawing; it is told in words or a table beside it. Element by element, for the page's policy lets no
+/// markup in, and by attributes, for it refuses styles that stand in an element.
 fn drawn(figure: &Figure) -> Html {
     let (width, height) = figure.size;
     html! {
         <svg role="img" aria-label={figure.label.clone()} viewBox={format!("0 0 {width} {height}")}
             width={width.to_string()} height={height.to_string()} fill="currentColor">
-            for ([x1, y1, x2, y2], dashes) in &figure.lines {
-                <line x1={x1.to_string()} y1={y1.to_string()} x2={x2.to_string()} y2={y2.to_string()}
-                    stroke="currentColor" stroke-dasharray={*dashes} />
+            for rule in &figure.rules { { line(rule, "", "0.3") } }
+            for (between, dashes) in &figure.lines { { line(between, dashes, "1") } }
+            for (x, y, full) in &figure.marks {
+                <circle cx={x.to_string()} cy={y.to_string()} r="3.5" stroke="currentColor"
+                    fill={if *full { "currentColor" } else { "Canvas" }} />
             }
             for (x, y, word) in &figure.words {
                 <text x={x.to_string()} y={y.to_string()} font-style="italic">{ word.clone() }</text>
+            }
+            for (x, y, anchor, word) in &figure.labels {
+                <text x={x.to_string()} y={y.to_string()} font-size="12" text-anchor={*anchor}>{ word.clone() }</text>
             }
             for (x, y, name) in &figure.names {
                 <text x={x.to_string()} y={y.to_string()} font-weight="600" text-anchor="middle">{ name.clone() }</text>
             }
         </svg>
+    }
+}
+
+fn line([x1, y1, x2, y2]: &[usize; 4], dashes: &'static str, opacity: &'static str) -> Html {
+    html! {
+        <line x1={x1.to_string()} y1={y1.to_string()} x2={x2.to_string()} y2={y2.to_string()}
+            stroke="currentColor" stroke-dasharray={dashes} stroke-opacity={opacity} />
     }
 }
 

@@ -1,11 +1,11 @@
 //! A rival taken away as a file: MPS, LaTeX, journal notation, or a scenario with it alone.
 
-use record::handover::{Form, Written};
-use record::message::LaneJob;
+use record::handover::Form;
+use record::message::{LaneJob, Request};
 use record::scenario::Scenario;
 use yew::prelude::*;
 
-use crate::browser::handover::hand_over;
+use crate::browser::handover::{Handed, hand_over};
 use crate::browser::share::download;
 use crate::browser::worker::WorkerHandle;
 use crate::state::share::{file_name, file_of};
@@ -38,7 +38,7 @@ pub(crate) fn TakeAway(props: &TakeProps) -> Html {
                 tell.set(taken(&file, answer));
                 end.replace(None);
             });
-            match hand_over(form, job.clone(), hear) {
+            match hand_over(&Request::Write(form, Box::new(job.clone())), hear) {
                 Ok(started) => drop(worker.replace(Some(started))),
                 Err(why) => said.set(taken("", Err(why))),
             }
@@ -67,13 +67,14 @@ pub(crate) fn TakeAway(props: &TakeProps) -> Html {
 }
 
 /// Saves what was made; what to say of it.
-fn taken(file: &str, answer: Result<Written, String>) -> String {
+fn taken(file: &str, answer: Result<Handed, String>) -> String {
     match answer {
-        Ok(written) => {
+        Ok(Handed::Written(written)) => {
             download(file, written.text.as_str());
             let notes = written.notes.iter().map(|note| advice(note));
             [vec![format!("{file} is saved.")], notes.collect()].concat().join(" ")
         }
+        Ok(Handed::Stated(_)) => String::new(),
         Err(why) => sentence(&format!("Not written: {why}")),
     }
 }

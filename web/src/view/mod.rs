@@ -40,6 +40,7 @@ pub(crate) mod paste;
 mod picture;
 mod production;
 pub(crate) mod reason;
+mod record;
 mod recorded;
 mod replay;
 mod results;

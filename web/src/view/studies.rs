@@ -1,6 +1,5 @@
 //! The studies of the evidence: a question each, a button, and what was found.
 
-use record::pack::Pack;
 use record::study::Report;
 use report::certificate;
 use report::study::{derived, overview, sections};
@@ -10,14 +9,14 @@ use crate::browser::share::download;
 use crate::browser::studying::Studying;
 use crate::state::board::Board;
 use crate::state::document::{Document, DocumentAction};
-use crate::state::same::results as results_of;
 use crate::state::share::file_of;
 use crate::state::studies::{
-    Found as Answer, KINDS, OVER_ALL, Of, PRODUCTION, Part, Shelf, on_record, scenario_of,
+    Found as Answer, KINDS, OVER_ALL, Of, PRODUCTION, Part, Shelf, scenario_of,
 };
 use crate::view::finding::{section, sections_of};
 use crate::view::hands::use_hands;
 use crate::view::production::Pasted;
+use crate::view::record::Record;
 
 #[derive(Properties, PartialEq, Clone)]
 pub(crate) struct StudiesProps {
@@ -61,47 +60,8 @@ pub(crate) fn Studies(props: &StudiesProps) -> Html {
                 { body(document, &shelf, kind, how) }
             </div>
         }
-        { decision_record(props, &shelf) }
+        <Record document={document.clone()} board={props.board.clone()} shelf={(*shelf).clone()} />
         </>
-    }
-}
-
-/// The record of all that the page has found, saved as a file.
-fn decision_record(props: &StudiesProps, shelf: &Shelf) -> Html {
-    let save = |html: bool| {
-        let (StudiesProps { document, board }, shelf) = (props.clone(), shelf.clone());
-        Callback::from(move |_: MouseEvent| {
-            let results = results_of(&document, &board);
-            let text = on_record(&document, &results, &shelf, html);
-            let ending = if html { "decision.html" } else { "decision.md" };
-            download(&file_of(&document.title, ending), text.as_str());
-        })
-    };
-    let pack = {
-        let (document, board) = (props.document.clone(), props.board.clone());
-        Callback::from(move |_: MouseEvent| {
-            let mut results = results_of(&document, &board);
-            results.retain(|one| one.root.is_some());
-            let pack = Pack::new(env!("CARGO_PKG_VERSION"), &document.scenario(), &results);
-            download(&file_of(&document.title, "pack.json"), report::pack::json(&pack).as_str());
-        })
-    };
-    html! {
-        <div class="study">
-            <div class="heading">
-                <h3>{ "Decision record" }</h3>
-                <span class="row">
-                    <button type="button" data-testid="record-html" onclick={save(true)}>{ "Save to print" }</button>
-                    <button type="button" data-testid="record-markdown" onclick={save(false)}>{ "Save as Markdown" }</button>
-                    <button type="button" data-testid="pack" onclick={pack}>{ "Save pack" }</button>
-                </span>
-            </div>
-            <p class="soft">
-                { "The question, the instance, what was found and answered above, what would reopen the decision, \
-                   the formulations, and how to see the same. The pack is for regression tests: the scenario with what \
-                   each rival gave so far, to be opened here or run by hullward drift." }
-            </p>
-        </div>
     }
 }
 

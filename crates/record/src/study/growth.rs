@@ -19,6 +19,10 @@ pub struct Growth {
     pub seed: u64,
     /// How many cells the whole study has.
     pub of: u32,
+    /// Parts of instances that were asked for and are left out, for they would be parts that are there
+    /// already: each counts once.
+    #[serde(default)]
+    pub again: u32,
     /// The runs, in order of their numbers.
     pub cells: Vec<Cell>,
     /// Each rival at each size.

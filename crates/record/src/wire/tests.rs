@@ -2,7 +2,7 @@
 
 use super::*;
 use crate::event::{Event, NodeNumber};
-use crate::handover::{Form, Written};
+use crate::handover::{Form, Stated, Statement, Written};
 use crate::message::{Acted, CheckReport, LaneJob, Reply, RunNumber};
 use crate::results::{ErrorReport, Proof, RootReport, SearchReport, SolutionEntry, Status};
 use crate::scenario::{Act, ActKind, InstanceText, Rival, Run};
@@ -81,6 +81,7 @@ fn requests_come_back() {
         Request::List,
         Request::Load(Box::new(job.clone())),
         Request::Write(Form::Latex, Box::new(job)),
+        Request::State("hullward = 1\n".to_owned()),
         Request::Run { nodes: Some(1) },
         Request::Inspect(NodeNumber(9)),
         Request::Act(act()),
@@ -109,6 +110,11 @@ fn replies_come_back_with_their_empty_fields() {
         Reply::Batch(vec![Event::Bound { bound: 1.0, nodes: 2 }]),
         Reply::Failed(failed),
         Reply::Written(Box::new(Written { text: "ENDATA\n".to_owned(), notes: Vec::new() })),
+        Reply::Stated(Box::new(Stated {
+            rivals: vec![Statement { text: "min 1\n".to_owned(), typeset: typeset() }],
+            facts: vec!["3 stops".to_owned()],
+            unit: "minutes".to_owned(),
+        })),
         Reply::Explained(crate::message::Explanation::default()),
         Reply::Checked(Box::new(CheckReport { typeset: typeset(), ..CheckReport::default() })),
         Reply::Acted(Box::new(Acted {

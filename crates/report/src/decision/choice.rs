@@ -176,20 +176,19 @@ fn grown(pair: &GrowthPair, [ahead, other]: [&str; 2]) -> Option<String> {
 
 /// Between which values the best possible plan of an instance lies, in the unit of the data.
 #[derive(Debug, Clone, PartialEq)]
-pub struct Interval {
+pub(super) struct Interval {
     /// The instance; empty where there is one.
-    pub instance: String,
+    pub(super) instance: String,
     /// Whether larger is better.
-    pub maximise: bool,
+    pub(super) maximise: bool,
     /// The strongest bound that exact arithmetic proved.
-    pub bound: f64,
+    pub(super) bound: f64,
     /// The best plan that was found; none where there is none.
-    pub plan: Option<f64>,
+    pub(super) plan: Option<f64>,
 }
 
 /// The interval of each instance; none where nothing is proved or rivals are not the same problem.
-#[must_use]
-pub fn intervals(evidence: &Evidence<'_>) -> Vec<Interval> {
+pub(super) fn intervals(evidence: &Evidence<'_>) -> Vec<Interval> {
     if apart(evidence.studies).is_some() {
         return Vec::new();
     }
@@ -215,8 +214,7 @@ fn interval(evidence: &Evidence<'_>, instance: &str) -> Option<Interval> {
 
 impl Interval {
     /// Whether bound and plan meet.
-    #[must_use]
-    pub fn is_closed(&self) -> bool {
+    pub(super) fn is_closed(&self) -> bool {
         self.plan.is_some_and(|plan| (plan - self.bound).abs() <= 1e-9 * (1.0 + plan.abs()))
     }
 

@@ -19,6 +19,7 @@ p,ul,ol{margin:4px 0 8px}ul,ol{padding-left:20px}p{white-space:pre-line}\
 table{border-collapse:collapse;margin:8px 0;font:13px/20px system-ui,sans-serif;font-variant-numeric:tabular-nums}\
 th,td{padding:3px 10px 3px 0;border-bottom:1px solid #8884;text-align:right;font-weight:400;vertical-align:top}\
 h3 small{font-weight:400;opacity:.7}\
+svg{display:block;max-width:100%;height:auto;margin:8px 0}\
 th.w,td.w{text-align:left}thead th{opacity:.7}\
 .set td{text-align:left;padding:2px 8px 2px 0;border:0;font-size:14px}.set td.l{text-align:right;padding-right:3px}\
 pre{overflow-x:auto;margin:8px 0;padding:8px;border:1px solid #8884;font:13px/18px ui-monospace,monospace;white-space:pre-wrap;overflow-wrap:anywhere}\

@@ -1,12 +1,33 @@
 //! The record as JSON, piece by piece.
 
-use super::Block;
+use record::file;
+
+use super::choice::Interval;
 use super::cited::with_marks;
+use super::{Block, Evidence};
 use crate::certificate::{list, text};
 use crate::study::Table;
 
-pub(super) fn document(blocks: &[Block]) -> String {
-    list(blocks, of_block)
+pub(super) fn object(evidence: &Evidence<'_>, intervals: &[Interval], blocks: &[Block]) -> String {
+    format!(
+        "{{\n\"hullward_record\": 1,\n\"engine\": {},\n\"scenario\": {},\n\"intervals\": {},\n\"record\": {}\n}}\n",
+        text(evidence.engine),
+        text(&file::print(evidence.scenario)),
+        list(intervals, |one| of_interval(one, evidence.unit)),
+        list(blocks, of_block),
+    )
+}
+
+fn of_interval(one: &Interval, unit: &str) -> String {
+    let sense = if one.maximise { "maximise" } else { "minimise" };
+    let plan = one.plan.map_or_else(|| "null".to_owned(), |plan| format!("{plan:?}"));
+    format!(
+        "{{\"instance\": {}, \"sense\": \"{sense}\", \"bound\": {:?}, \"plan\": {plan}, \"unit\": {}, \"closed\": {}}}",
+        text(&one.instance),
+        one.bound,
+        text(unit),
+        one.is_closed(),
+    )
 }
 
 fn of_block(block: &Block) -> String {

@@ -2,6 +2,7 @@
 
 use record::study::{Fit, Growth, GrowthPair, SizeMean};
 
+use super::growth_chart::{growing, profiled};
 use super::{Section, Table};
 use crate::number::{count, of, percent, short};
 
@@ -11,7 +12,13 @@ shifted geometric ones. A run that was stopped counts with what it had done unti
 its rival looks better than it is. Ratios are paired: the same instances for both.";
 
 pub(super) fn sections(growth: &Growth) -> Vec<Section> {
-    let mut sections = vec![sizes(growth)];
+    let mut rivals: Vec<&str> = Vec::new();
+    for cell in &growth.cells {
+        if !rivals.contains(&cell.rival.as_str()) {
+            rivals.push(&cell.rival);
+        }
+    }
+    let mut sections = vec![sizes(growth, &rivals)];
     if !growth.pairs.is_empty() {
         sections.push(pairs(&growth.pairs, "work"));
     }
@@ -19,30 +26,25 @@ pub(super) fn sections(growth: &Growth) -> Vec<Section> {
         sections.push(fits(growth));
     }
     if !growth.profile.is_empty() {
-        let mut rivals: Vec<&str> = Vec::new();
-        for cell in &growth.cells {
-            if !rivals.contains(&cell.rival.as_str()) {
-                rivals.push(&cell.rival);
-            }
-        }
         sections.push(profile(&growth.profile, &rivals, "work"));
     }
     sections
 }
 
-fn sizes(growth: &Growth) -> Section {
+fn sizes(growth: &Growth, rivals: &[&str]) -> Section {
     let head = ["rival", "size", "instances", "stopped", "root gap", "nodes", "work"];
     let mut table = Table::new(&head, &[0]);
     table.rows = growth.means.iter().map(mean).collect();
     let failed = growth.cells.iter().filter(|cell| !cell.failed.is_empty()).count();
     let mut notes = vec![MEANING.to_owned()];
     notes.extend(sources(growth));
+    notes.extend(again(growth));
     if failed > 0 {
         notes.push(format!("{} gave no result: no model of that size.", of(failed as u64, "run")));
     }
     Section {
         faults: Vec::new(),
-        figure: None,
+        figure: growing(growth, rivals),
         heading: format!(
             "Growth ({}; at most {}{} a run)",
             growth.data,
@@ -79,6 +81,17 @@ fn sources(growth: &Growth) -> Option<String> {
             of(many as u64, "instance")
         )),
     }
+}
+
+/// That parts which are the same count once.
+fn again(growth: &Growth) -> Option<String> {
+    (growth.again > 0).then(|| {
+        format!(
+            "{} that were asked for are left out: a part is no larger than its instance, and parts with the same \
+             elements are one instance and count once.",
+            of(u64::from(growth.again), "part")
+        )
+    })
 }
 
 fn mean(mean: &SizeMean) -> Vec<String> {
@@ -198,6 +211,7 @@ pub(super) fn profile(shares: &[(f64, Vec<f64>)], rivals: &[&str], what: &str) -
     }
     Section {
         heading: "Performance profile (Dolan & Moré 2002): share of instances solved".to_owned(),
+        figure: profiled(shares, rivals, what),
         table: Some(table),
         notes,
         ..Section::default()

@@ -2,31 +2,14 @@
 //! never stronger, left out where it follows from lines that are known as well. Levels differ by the
 //! line and by the word beside it.
 
-use std::fmt::Write;
-
 use record::study::{Order, OrderLevel, Relation, Report};
 
+use super::figure::Figure;
 use super::{Section, and};
-use crate::decision::escaped;
 
 /// The distance of two rows, and of two places in a row, in pixels.
 const STEP: usize = 88;
 const ACROSS: usize = 150;
-
-/// A drawing of lines and words; places are in pixels from the upper left.
-#[derive(Debug, Clone, Default, PartialEq, Eq)]
-pub struct Figure {
-    /// What it shows, in words.
-    pub label: String,
-    /// Width and height.
-    pub size: (usize, usize),
-    /// Lines from x, y to x, y, each with its dashes.
-    pub lines: Vec<([usize; 4], &'static str)>,
-    /// Words beside the lines: x, y and the word.
-    pub words: Vec<(usize, usize, String)>,
-    /// Names of the rivals, centred.
-    pub names: Vec<(usize, usize, String)>,
-}
 
 /// Rivals of equal strength, and the lines between them.
 struct Diagram {
@@ -186,45 +169,8 @@ impl Diagram {
             lines: self.lines.iter().map(line).collect(),
             words: self.lines.iter().map(word).collect(),
             names: (0..self.classes.len()).map(name).collect(),
+            ..Figure::default()
         }
-    }
-}
-
-impl Figure {
-    /// The drawing as SVG.
-    #[must_use]
-    pub fn svg(&self) -> String {
-        let (width, height) = self.size;
-        let mut out = format!(
-            "<svg role=\"img\" aria-label=\"{}\" viewBox=\"0 0 {width} {height}\" width=\"{width}\" \
-             height=\"{height}\" style=\"max-width:100%;font:13px system-ui,sans-serif\" \
-             fill=\"currentColor\">",
-            escaped(&self.label)
-        );
-        for ([x1, y1, x2, y2], dashes) in &self.lines {
-            // Writing to a string cannot fail.
-            let _ = write!(
-                out,
-                "<line x1=\"{x1}\" y1=\"{y1}\" x2=\"{x2}\" y2=\"{y2}\" stroke=\"currentColor\" \
-                 stroke-dasharray=\"{dashes}\"/>"
-            );
-        }
-        for (x, y, word) in &self.words {
-            let _ = write!(
-                out,
-                "<text x=\"{x}\" y=\"{y}\" font-style=\"italic\">{}</text>",
-                escaped(word)
-            );
-        }
-        for (x, y, name) in &self.names {
-            let _ = write!(
-                out,
-                "<text x=\"{x}\" y=\"{y}\" font-size=\"16\" font-weight=\"600\" \
-                 text-anchor=\"middle\">{}</text>",
-                escaped(name)
-            );
-        }
-        out + "</svg>"
     }
 }
 

@@ -10,7 +10,8 @@ use crate::lanes::{paste, status};
 /// Two directions of a triangle: 10 one way, 11 the other.
 const TRIANGLE: &str = "\tA\tB\tC\nA\t\t1\t2\nB\t3\t\t4\nC\t5\t6\t\n";
 
-async fn ask(browser: &Browser, kind: &str) -> Outcome<String> {
+/// Asks a study at its button; what is answered.
+pub(crate) async fn ask(browser: &Browser, kind: &str) -> Outcome<String> {
     browser.still(&format!("[data-testid=study-{kind}]")).await?.click().await?;
     let script = "const study = document.querySelector(`[data-study=${arguments[0]}]`); \
                   return study.querySelector('.finding') ? study.innerText : ''";

@@ -8,7 +8,7 @@
 //! | [`log_digest`] | one line that two machines can compare |
 //! | [`LogAudit`] | a saved log proved again |
 //! | [`explanation`], [`explained`] | what the code of a complaint means, and the codes there are |
-//! | [`typeset`](fn@typeset) | journal notation set as mathematics |
+//! | [`stated`] | what a decision record repeats of a scenario: each rival as it is written and set as mathematics |
 //! | [`prepare`] | the model of a rival, for checks |
 //! | [`describe`] | the same in sentences |
 //! | [`mps`](fn@mps), [`latex`], [`notation_text`] | a rival handed over to others |

@@ -211,3 +211,31 @@ fn verdicts(of: &RivalNumerics) -> Vec<String> {
     }
     verdicts
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// How many verdicts a rival has with one figure.
+    fn said(set: impl Fn(&mut RivalNumerics)) -> usize {
+        let mut of = RivalNumerics::default();
+        set(&mut of);
+        verdicts(&of).len()
+    }
+
+    /// Each named threshold from both sides: at it nothing is said, beyond it one sentence.
+    #[test]
+    fn each_threshold_speaks_beyond_it_and_not_at_it() {
+        let beyond = |most: f64| [most, most * (1.0 + 1e-9)];
+        let at = String::from("here");
+        let leak = beyond(MOST_LEAK).map(|v| said(|of| of.leak = (v, at.clone())));
+        let condition = beyond(MOST_CONDITION).map(|v| said(|of| of.condition = Some(v)));
+        let plan = beyond(MOST_VIOLATION).map(|v| said(|of| of.plan_off = Some(v)));
+        let row = beyond(MOST_RATIO).map(|v| said(|of| of.row_ratio = (v, at.clone())));
+        let column = beyond(MOST_RATIO).map(|v| said(|of| of.column_ratio = (v, at.clone())));
+        let silent = said(|_| ());
+        for [under, over] in [leak, condition, plan, row, column] {
+            assert_eq!((under, over), (silent, silent + 1));
+        }
+    }
+}

@@ -107,6 +107,32 @@ fn labels_with_too_small_a_coefficient_are_caught_on_few_stops() {
     assert!(example.nearest.is_empty() || example.nearest != example.plan, "{example:?}");
 }
 
+/// Both rivals name a `y`, and mean another thing by it: as long as every common name counts they are
+/// not the same problem; once `shared` says that plans are told apart by `x` they are.
+#[test]
+fn chosen_variables_decide_what_is_the_same() {
+    let data = stops(3);
+    let text = |counted: &str| {
+        format!(
+            "Choice\ndata\n V\nminimise\n Σ_{{i ∈ V}} x_i\nsubject to\n Σ_{{i ∈ V}} x_i ≥ 1 (some)\n \
+             y_i = {counted} ∀ i ∈ V (counted)\n x_i, y_i ∈ {{0,1}} ∀ i ∈ V\n"
+        )
+    };
+    let verdict = |shared: &[&str]| {
+        let subjects =
+            vec![subject("A", &text("x_i"), &data), subject("B", &text("1 − x_i"), &data)];
+        let shared = shared.iter().map(|name| (*name).to_owned()).collect();
+        let plan = Plan { mutants: false, shared, ..Plan::default() };
+        driven(1_000_000, |desk| court::court(desk, subjects, plan)).remove(0)
+    };
+    let every = verdict(&[]);
+    assert!(every.counterexample.is_some() && every.kind != EquivalenceKind::Sets, "{every:?}");
+    let chosen = verdict(&["x"]);
+    assert!(chosen.counterexample.is_none(), "{chosen:?}");
+    assert_eq!((chosen.equivalent, chosen.kind), (Some(true), EquivalenceKind::Sets), "{chosen:?}");
+    assert!(chosen.shared.iter().all(|(name, _)| name == "x"), "{chosen:?}");
+}
+
 /// Cutting one way round a triangle: a plan that costs −1 more either way is none of the other.
 const OPEN: &str = "Cover
 data

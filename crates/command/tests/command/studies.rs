@@ -70,6 +70,35 @@ fn each_study_gives_an_object_of_its_own() {
     assert_eq!(objects, studies(SCENARIO));
 }
 
+/// Fifty days of one round: every study runs over all of them, each day by its name, and the record says what
+/// their orders come to.
+#[test]
+fn studies_run_over_fifty_instances() {
+    let day = |day: usize| {
+        let drive = |from: usize, to: usize| 1 + (from * 7 + to * 11 + day * 5) % 23;
+        let row = |from: usize| {
+            (0..4).map(|to| drive(from, to).to_string()).collect::<Vec<_>>().join(" ")
+        };
+        let rows: Vec<String> = (0..4).map(row).collect();
+        format!("[[instance]]\ntitle = \"Day {day}\"\ntext = '''\n{}\n'''\n", rows.join("\n"))
+    };
+    let days: String = (1..=50).map(day).collect();
+    let text = format!(
+        "hullward = 1\n{days}[[rival]]\nfrom = \"atsp/labels\"\n[[rival]]\nfrom = \"atsp/subtours\"\n\
+         [[study]]\nkind = \"ladder\"\n[[study]]\nkind = \"order\"\n"
+    );
+    let objects = studies(&text);
+    for kind in ["ladder", "order"] {
+        let of = objects.iter().filter(|object| object["study"] == kind);
+        let names: Vec<&str> = of.filter_map(|object| object["instance"].as_str()).collect();
+        let wanted: Vec<String> = (1..=50).map(|day| format!("Day {day}")).collect();
+        assert_eq!(names.iter().filter(|name| !name.is_empty()).count(), 50, "{kind}: {names:?}");
+        assert!(wanted.iter().all(|day| names.contains(&day.as_str())), "{kind}: {names:?}");
+    }
+    let record = out(&hullward(&["write", "-", "--as", "markdown"], &text));
+    assert!(record.contains("of 50 instances"), "{record}");
+}
+
 #[test]
 fn in_words_every_study_has_its_verdict() {
     let output = hullward(&["run", "-"], SCENARIO);

@@ -217,3 +217,19 @@ pub(super) fn profile(shares: &[(f64, Vec<f64>)], rivals: &[&str], what: &str) -
         ..Section::default()
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::profile;
+
+    /// A profile ranks two rivals; with three a rival that is not there may change the ranks of the others (Gould
+    /// & Scott 2016), and it is said.
+    #[test]
+    fn more_than_two_rivals_are_warned_of() {
+        let noted = |rivals: &[&str]| {
+            let shares = vec![(1.0, vec![0.5; rivals.len()]), (2.0, vec![1.0; rivals.len()])];
+            profile(&shares, rivals, "work").notes.concat().contains("Gould & Scott")
+        };
+        assert!(!noted(&["A", "B"]) && noted(&["A", "B", "C"]));
+    }
+}

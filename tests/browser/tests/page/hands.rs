@@ -150,19 +150,22 @@ async fn it_prints_to_a4_and_letter() -> Outcome<()> {
             let data = printed["data"].as_str().unwrap_or_default();
             assert!(data.starts_with("JVBERi"), "{name}: a PDF in base 64");
         }
-        // The width between the margins of A4, at 96 dots an inch.
-        browser.look(Screen { width: 718, dark: false }).await?;
-        media(browser, "print", json!([])).await?;
         let pressed = "
             const page = document.documentElement;
             const shown = [...document.querySelectorAll('button:not(.link), textarea:not(.title, .lane-title)')]
               .filter((each) => each.offsetParent !== null).map((each) => each.outerHTML.slice(0, 100));
             return [page.scrollWidth - page.clientWidth, shown];";
-        let fits = async || Ok(browser.script(pressed).await? == json!([0, []]));
-        let found = browser.script(pressed).await?;
-        browser.until(&format!("the page is fit for paper: {found}"), SOON, fits).await?;
-        assert!(browser.text().await?.contains("137.5"), "the bounds are printed");
-        media(browser, "", json!([])).await
+        // The widths between the margins of A4 and of Letter, at 96 dots an inch.
+        for width in [718, 740] {
+            browser.look(Screen { width, dark: false }).await?;
+            media(browser, "print", json!([])).await?;
+            let fits = async || Ok(browser.script(pressed).await? == json!([0, []]));
+            let found = browser.script(pressed).await?;
+            browser.until(&format!("the page is fit for {width}: {found}"), SOON, fits).await?;
+            assert!(browser.text().await?.contains("137.5"), "the bounds are printed");
+            media(browser, "", json!([])).await?;
+        }
+        Ok(())
     })
     .await
 }

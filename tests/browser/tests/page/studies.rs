@@ -5,7 +5,7 @@ use hullward_tests_browser::browser::{Browser, SOON};
 use hullward_tests_browser::screen::Screen;
 use hullward_tests_browser::visit::{Source, visit};
 
-use crate::lanes::{paste, status};
+use crate::lanes::{paste, status, value};
 
 /// Two directions of a triangle: 10 one way, 11 the other.
 const TRIANGLE: &str = "\tA\tB\tC\nA\t\t1\t2\nB\t3\t\t4\nC\t5\t6\t\n";
@@ -75,6 +75,30 @@ async fn a_study_stops_at_once_and_is_kept_with_the_scenario() -> Outcome<()> {
         // What was asked for belongs to the scenario, and is taken back as any change is.
         browser.find("button", "Undo: study that was asked for").await?.click().await?;
         browser.shows("How do they compare as the instance grows?").await?;
+        Ok(())
+    })
+    .await
+}
+
+/// Four machines with a constant that is far too large: the study finds the least that the data prove, and its
+/// button makes of it a rival of its own, with a better bound; the first stays as it was.
+#[tokio::test(flavor = "multi_thread")]
+async fn a_tightened_rival_is_added_with_its_better_bound() -> Outcome<()> {
+    let scenario = "hullward = 1\n[instance]\ntext = '''\nmachine cost load\na 5 4\nb 6 3\nc 7 8\nd 8 2\n'''\n\
+        [[rival]]\ntitle = \"Loose\"\ntext = '''\nLoose\ndata\n machine\n cost_i ∀ i ∈ machine\n load_i ∀ i ∈ machine\n\
+        minimise\n Σ_{i ∈ machine} cost_i y_i\nsubject to\n Σ_{i ∈ machine} x_i ≥ 6 (work)\n\
+        x_i ≤ 1000 y_i ∀ i ∈ machine (open)\n x_i ≤ load_i ∀ i ∈ machine (most)\n x_i ≥ 0 ∀ i ∈ machine\n\
+        y_i ∈ {0,1} ∀ i ∈ machine\n'''\n";
+    visit(Source::File, async |browser| {
+        paste(browser, scenario).await?;
+        status(browser, "A", "root solved").await?;
+        ask(browser, "tightening").await?;
+        browser.still("[data-study=tightening] [data-testid=derived]").await?.click().await?;
+        status(browser, "B", "root solved").await?;
+        // Four units by a and two by b, 5 · 4/1000 + 6 · 2/1000; where the loads stand in the rows, six by c, 7 · 6/8.
+        let bounds =
+            [value(browser, "A", "root-bound").await?, value(browser, "B", "root-bound").await?];
+        assert_eq!(bounds, [Some(0.032), Some(5.25)]);
         Ok(())
     })
     .await

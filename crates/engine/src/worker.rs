@@ -13,7 +13,7 @@ use crate::fault::fault;
 use crate::handover::handed_over;
 use crate::lane::Lane;
 use crate::map::{catalogue_entries, guide_sections};
-use crate::on_record::stated_of;
+use crate::on_record::{stated_of, stripped_of};
 use crate::outbox::Outbox;
 use crate::readings::Readings;
 use crate::studies::StudyRun;
@@ -147,6 +147,7 @@ impl Worker {
             Request::Explain(code) => self.reply(Reply::Explained(explanation(&code))),
             Request::Write(form, job) => self.reply(handed_over(form, *job)),
             Request::State(text) => self.reply(stated_of(&text)),
+            Request::Strip { scenario, factor } => self.reply(stripped_of(&scenario, &factor)),
             Request::Bind(job) => {
                 let (bound, suits) = bindings(&job, &mut self.readings);
                 self.reply(Reply::Bound(bound, suits));

@@ -45,6 +45,14 @@ pub enum Request {
     /// Say what a decision record repeats of a scenario, given as text. Answered by
     /// [`Reply::Stated`].
     State(String),
+    /// Strip a scenario, given as text, of its names and multiply its costs by a factor. Answered by
+    /// [`Reply::Written`].
+    Strip {
+        /// The scenario.
+        scenario: String,
+        /// A decimal number over 0.
+        factor: String,
+    },
     /// Say which data each rival takes from an instance. Answered by [`Reply::Bound`].
     Bind(Box<BindJob>),
     /// Make a study of all rivals. Answered by [`Reply::Progress`] and [`Reply::Studied`].

@@ -67,7 +67,7 @@ pub(crate) fn TakeAway(props: &TakeProps) -> Html {
 }
 
 /// Saves what was made; what to say of it.
-fn taken(file: &str, answer: Result<Handed, String>) -> String {
+pub(crate) fn taken(file: &str, answer: Result<Handed, String>) -> String {
     match answer {
         Ok(Handed::Written(written)) => {
             download(file, written.text.as_str());

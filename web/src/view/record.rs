@@ -12,9 +12,10 @@ use crate::state::board::Board;
 use crate::state::document::Document;
 use crate::state::on_record::{OnRecord, Paper};
 use crate::state::same::results as results_of;
-use crate::state::share::file_of;
+use crate::state::share::{file_name, file_of};
 use crate::state::studies::Shelf;
 use crate::state::words::sentence;
+use crate::view::handover::taken;
 
 #[derive(Properties, PartialEq, Clone)]
 pub(crate) struct RecordProps {
@@ -71,6 +72,12 @@ impl Writing {
         self.said.set(format!("{file} is saved."));
     }
 
+    /// Asks a worker for a text and saves it.
+    fn written(&self, request: &Request, file: String) {
+        let said = self.said.clone();
+        self.ask(request, move |answer| said.set(taken(&file, answer)));
+    }
+
     /// Saves the record, once a worker has said what it repeats of the scenario.
     fn record(&self, record: OnRecord, paper: Paper, file: String) {
         let own = self.clone();
@@ -118,10 +125,24 @@ pub(crate) fn Record(props: &RecordProps) -> Html {
     let said = use_state_eq(String::new);
     let worker = use_mut_ref(|| None::<WorkerHandle>);
     let writing = Writing { worker, said: said.setter() };
+    let factor = use_state_eq(|| "1".to_owned());
     let save = |form: Form, ending: &str| {
         let (props, writing) = (props.clone(), writing.clone());
         let file = file_of(&props.document.title, ending);
         Callback::from(move |_: MouseEvent| props.save(form, file.clone(), &writing))
+    };
+    let strip = {
+        let (document, factor, writing) = (props.document.clone(), factor.clone(), writing.clone());
+        Callback::from(move |_: MouseEvent| {
+            let (scenario, factor) = (document.file(), factor.trim().to_owned());
+            writing.written(&Request::Strip { scenario, factor }, file_name("no names"));
+        })
+    };
+    let scale = {
+        let set = factor.setter();
+        Callback::from(move |event: InputEvent| {
+            set.set(event.target_unchecked_into::<web_sys::HtmlInputElement>().value());
+        })
     };
     html! {
         <div class="study">
@@ -139,6 +160,13 @@ pub(crate) fn Record(props: &RecordProps) -> Html {
                    is for regression tests: the scenario with what each rival gave so far, to be opened here or run \
                    by hullward drift." }
             </p>
+            <div class="row">
+                <button type="button" data-testid="stripped" onclick={strip}>{ "Scenario without names" }</button>
+                <label class="family">
+                    { "costs times" }
+                    <input type="text" inputmode="decimal" size="6" data-testid="stripped-factor" value={(*factor).clone()} oninput={scale} />
+                </label>
+            </div>
             <p class="soft" role="status" data-testid="record-said">{ (*said).clone() }</p>
         </div>
     }

@@ -82,6 +82,7 @@ fn requests_come_back() {
         Request::Load(Box::new(job.clone())),
         Request::Write(Form::Latex, Box::new(job)),
         Request::State("hullward = 1\n".to_owned()),
+        Request::Strip { scenario: "hullward = 1\n".to_owned(), factor: "2.5".to_owned() },
         Request::Run { nodes: Some(1) },
         Request::Inspect(NodeNumber(9)),
         Request::Act(act()),

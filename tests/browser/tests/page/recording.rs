@@ -31,18 +31,19 @@ async fn saved(browser: &Browser, button: &str) -> Outcome<(String, String)> {
 }
 
 /// What the command writes of a file.
-async fn written(file: &Path, form: &str) -> Outcome<String> {
+async fn written(file: &Path, form: &str, more: &[&str]) -> Outcome<String> {
     let mut command = Command::new(env!("CARGO"));
     command.current_dir(Path::new(env!("CARGO_MANIFEST_DIR")).join("../.."));
     command.args(["run", "--quiet", "--package", "hullward-command", "--", "write"]);
-    let output = command.arg(file).args(["--as", form]).output().await?;
+    let output = command.arg(file).args(["--as", form]).args(more).output().await?;
     if !output.status.success() {
         return Err(String::from_utf8_lossy(&output.stderr).into());
     }
     Ok(String::from_utf8(output.stdout)?)
 }
 
-/// The formulations were set in the record of the command alone; JSON, CSV and SVG could not be had from the page.
+/// The formulations were set in the record of the command alone; JSON, CSV, SVG
+/// and a scenario without names could not be had from the page.
 #[tokio::test(flavor = "multi_thread")]
 async fn a_record_is_saved_as_the_command_writes_it() -> Outcome<()> {
     let scenario = record::file::parse(SCENARIO).scenario.ok_or("the scenario is read")?;
@@ -66,14 +67,14 @@ async fn a_record_is_saved_as_the_command_writes_it() -> Outcome<()> {
         for (button, form, ending) in forms {
             let (name, text) = saved(browser, button).await?;
             assert!(name.starts_with("A small round") && name.ends_with(ending), "{name}");
-            let wanted = written(&file, form).await?;
+            let wanted = written(&file, form, &[]).await?;
             same_lines(form, &text, &wanted);
         }
         let (_, html) = saved(browser, "record-html").await?;
         assert!(html.contains("<math") && html.contains("<msub>"), "formulations are set");
         assert!(html.contains("aria-label=\"Bounds of A on the way"), "ladders are drawn");
-        same_object(&saved(browser, "record-json").await?.1, &written(&file, "json").await?)?;
-        Ok(())
+        same_object(&saved(browser, "record-json").await?.1, &written(&file, "json", &[]).await?)?;
+        stripped(browser, &file).await
     })
     .await
 }
@@ -94,4 +95,20 @@ fn same_object(page: &str, command: &str) -> Outcome<()> {
     assert_eq!(page["record"][0]["title"], "A small round");
     assert!(command["studies"].is_array(), "{command:#}");
     Ok(())
+}
+
+/// Names are replaced and costs multiplied as the command does; a factor that is none is refused in words.
+async fn stripped(browser: &Browser, file: &Path) -> Outcome<()> {
+    let (name, text) = saved(browser, "stripped").await?;
+    assert!(name.ends_with(".hullward.toml") && !text.contains("Ash"), "{name}: {text}");
+    assert_eq!(text, written(file, "stripped", &[]).await?);
+    let factor = browser.select("[data-testid=stripped-factor]").await?;
+    factor.clear().await?;
+    factor.send_keys("2.5").await?;
+    let (_, text) = saved(browser, "stripped").await?;
+    assert_eq!(text, written(file, "stripped", &["--scale", "2.5"]).await?);
+    factor.clear().await?;
+    factor.send_keys("nothing").await?;
+    browser.still("[data-testid=stripped]").await?.click().await?;
+    browser.shows("the factor must be over 0, not nothing").await
 }

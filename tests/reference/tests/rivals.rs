@@ -11,7 +11,7 @@ use hullward_tests_reference::round_trip::{
 };
 use hullward_tests_reference::seeded::{extent, families, seeded};
 use hullward_tests_reference::theory::{
-    cheapest_lots, cheapest_sites, shortest_path, sites_of_or_library,
+    cheapest_lots, cheapest_sites, shortest_path, sites_of_or_library, table,
 };
 use hullward_tests_reference::{agree, open_data};
 use instance::Instance;
@@ -222,6 +222,25 @@ fn the_twelve_months_of_wagner_and_whitin() {
         assert!(agree(found, 864.0, 1e-8), "{id}: {found}");
     }
     big_m_bounds(&months, 296.3478, 101.2397);
+    let lots = [(1, 98.0), (3, 97.0), (5, 121.0), (8, 112.0), (10, 67.0), (11, 135.0)];
+    assert!(agree(cost_of(&lots, &months), 864.0, 1e-12));
+}
+
+/// What published lots cost, each a period and how much is made in it; no period may run short.
+fn cost_of(lots: &[(usize, f64)], instance: &Instance) -> f64 {
+    let cells = |name: &str, t: usize| table(instance, name)[&vec![t.to_string()]];
+    let (mut stock, mut cost) = (0.0, 0.0);
+    for t in 1..=table(instance, "d").len() {
+        if let Some((_, made)) = lots.iter().find(|(period, _)| *period == t) {
+            stock += made;
+            cost += cells("f", t) + cells("p", t) * made;
+        }
+        stock -= cells("d", t);
+        assert!(stock >= 0.0, "period {t} runs short by {}", -stock);
+        cost += cells("h", t) * stock;
+    }
+    assert!(agree(stock, 0.0, 1e-12), "{stock} are left");
+    cost
 }
 
 /// The bounds of the big-M form with the demand of the remaining periods, and of all periods.
@@ -239,24 +258,32 @@ fn big_m_bounds(instance: &Instance, remaining: f64, all: f64) {
 #[test]
 fn the_four_periods_of_wolsey() {
     let periods = instance(&lots(&[2, 4, 5, 1], &[12, 20, 16, 8], "3", &["1", "2", "1", "1"]));
-    assert_eq!(cheapest_lots(&periods).last(), Some(&69.0));
+    assert_eq!(cheapest_lots(&periods), [18.0, 34.0, 64.0, 69.0]);
+    assert!(agree(cost_of(&[(1, 6.0), (3, 6.0)], &periods), 69.0, 1e-12));
     for id in INTEGRAL_LOTS {
         assert!(agree(bound(id, &periods), 69.0, 1e-8), "{id}");
     }
     big_m_bounds(&periods, 63.0, 52.0);
 }
 
-/// Twelve periods from the text of Silver & Meal: optimum 501.20; bound computed.
+/// Twelve periods from the text of Silver & Meal: optimum 501.20; bounds, forward values and lots computed.
 #[test]
 fn the_twelve_periods_of_silver_and_meal() {
     let demand = [10, 62, 12, 130, 154, 129, 88, 52, 124, 160, 238, 41];
     let periods = instance(&lots(&demand, &[54], "0", &["0.4"]));
-    assert!(agree(*cheapest_lots(&periods).last().unwrap(), 501.2, 1e-12));
+    let forward = [54.0, 78.8, 88.4, 142.4, 196.4, 248.0, 285.6, 322.8, 376.8, 430.8, 484.8, 501.2];
+    let found = cheapest_lots(&periods);
+    assert_eq!(found.len(), forward.len());
+    for (found, wanted) in found.iter().zip(forward) {
+        assert!(agree(*found, wanted, 1e-12), "{found} for {wanted}");
+    }
+    let lots = [84.0, 130.0, 283.0, 140.0, 124.0, 160.0, 279.0];
+    let lots: Vec<(usize, f64)> = [1, 4, 5, 7, 9, 10, 11].into_iter().zip(lots).collect();
+    assert!(agree(cost_of(&lots, &periods), 501.2, 1e-12));
     for id in INTEGRAL_LOTS {
         assert!(agree(bound(id, &periods), 501.2, 1e-8), "{id}");
     }
-    let found = bound("lot/big-m", &periods);
-    assert!((found - 140.2349).abs() < 1e-4, "{found}");
+    big_m_bounds(&periods, 140.2349, 54.0);
 }
 
 #[test]

@@ -136,7 +136,7 @@ fn several_instances_are_one_study_drawn_together_by_instance() {
     assert_eq!(days, ["Monday", "Tuesday", "Wednesday"].into());
     assert_eq!((cells.len(), &object["pairs"][0]["instances"]), (24, &12.into()));
     let words = out(&hullward(&["run", &file.to_string_lossy()], ""));
-    assert!(words.contains("it rests on 3 instances"), "{words}");
+    assert!(words.contains("both rest on 3 instances"), "{words}");
     std::fs::remove_dir_all(&folder).expect("it was there");
 }
 

@@ -72,12 +72,13 @@ fn sources(growth: &Growth) -> Option<String> {
         _ if !own => None,
         0 => None,
         1 => Some(
-            "All are parts of one instance: the intervals say how its parts scatter, and nothing of \
-             other instances."
+            "All are parts of one instance: intervals and sign tests say how its parts scatter, and \
+             nothing of other instances."
                 .to_owned(),
         ),
         many => Some(format!(
-            "Parts of one instance are drawn together when the interval is made: it rests on {}.",
+            "Parts of one instance are drawn together when the interval is made, and have one vote in the \
+             sign test: both rest on {}.",
             of(many as u64, "instance")
         )),
     }

@@ -176,8 +176,23 @@ fn pair(
         (!logs.is_empty()).then(|| libm::exp(logs.iter().copied().sum::<f64>() / count(logs.len())))
     };
     out.interval = interval(resampled(&groups, seed, mean)).unwrap_or((out.ratio, out.ratio));
-    out.p = sign_test(out.wins, out.losses);
+    out.p = match table.keys().any(|(_, instance, ..)| !instance.is_empty()) {
+        true => by_source(&groups),
+        false => sign_test(out.wins, out.losses),
+    };
     out
+}
+
+/// The sign test with one vote for each instance, by the mean of its parts: they are not independent.
+fn by_source(groups: &[Vec<f64>]) -> f64 {
+    let least = libm::log(TIE);
+    let means = groups.iter().map(|logs| logs.iter().sum::<f64>() / count(logs.len()));
+    let (mut wins, mut losses) = (0, 0);
+    for mean in means {
+        wins += u32::from(mean > -least);
+        losses += u32::from(mean < least);
+    }
+    sign_test(wins, losses)
 }
 
 fn fits(growth: &Growth, rivals: &[String]) -> Vec<Fit> {

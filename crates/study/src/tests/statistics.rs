@@ -191,3 +191,36 @@ fn the_performance_profile_is_the_distribution_of_the_library() {
         shares.iter().zip(of_twelve).for_each(|(share, of)| near(*share, of / 12.0, 1e-12));
     }
 }
+
+/// Three days with four parts each, on all of which one rival wins: three votes and no twelve. As twelve the parts of
+/// three days were told apart at p = 0.0005; `scipy.stats.binomtest(3, 3).pvalue` is 0.25.
+#[test]
+fn parts_of_one_instance_have_one_vote() {
+    let cells = |days: &[&str]| {
+        let mut cells = Vec::new();
+        for day in days {
+            for (rival, work) in [("A", 1_000_000), ("B", 9_000_000)] {
+                for size in 4..8 {
+                    cells.push(Cell {
+                        cell: u32::try_from(cells.len()).expect("few"),
+                        rival: rival.to_owned(),
+                        instance: (*day).to_owned(),
+                        solved: true,
+                        size,
+                        work,
+                        ..Cell::default()
+                    });
+                }
+            }
+        }
+        cells
+    };
+    let pair = |days: &[&str]| {
+        summed_up(Growth { cells: cells(days), ..Growth::default() }).pairs.remove(0)
+    };
+    let days = pair(&["Monday", "Tuesday", "Wednesday"]);
+    assert_eq!((days.instances, days.wins, days.distinguishable), (12, 12, false));
+    near(days.p, 0.25, 1e-12);
+    // Of a single instance, about whose parts alone it speaks, each part is one.
+    near(pair(&[""]).p, 0.125, 1e-12);
+}

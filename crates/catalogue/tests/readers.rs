@@ -19,6 +19,7 @@ use notation::{Diagnostic, assumed, bind, check, parse};
 const FILES: &[(&str, &[&str])] = &[
     ("jobshop/ft06", &["job-shop"]),
     ("gap/gap1.txt", &["gap"]),
+    ("mknap/mknap1.txt", &["multi-knapsack"]),
     ("cap/cap41.txt", &["cfl", "ufl"]),
     ("pmedian/pmed1.txt", &["p-median", "p-centre"]),
     ("wt/wt40.txt", &["machine", "tardiness"]),

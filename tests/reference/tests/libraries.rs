@@ -61,8 +61,6 @@ fn capacities_are_read() {
 
 #[test]
 fn knapsacks_of_several_rows_have_bound_and_optimum() {
-    let text = "Several rows\ndata\n I  rows\n J  items\n p_j ∀ j ∈ J\n a_{i,j} ∀ i ∈ I, j ∈ J\n b_i ∀ i ∈ I\n\
-        maximise\n Σ_{j ∈ J} p_j x_j\nsubject to\n Σ_{j ∈ J} a_{i,j} x_j ≤ b_i ∀ i ∈ I (fit)\n x_j ∈ {0,1} ∀ j ∈ J\n";
     for (at, bound, best) in [
         (1, 4_134.074_074_074, 3800.0),
         (2, 9_297.712_466_844, 8706.1),
@@ -72,7 +70,7 @@ fn knapsacks_of_several_rows_have_bound_and_optimum() {
         (7, 16_612.821_234_12, 16_537.0),
     ] {
         let Some(instance) = part("mknap/mknap1.txt", OR_LIBRARY, at) else { return };
-        let model = formulation(text, &instance);
+        let model = rival("multi-knapsack/plain", &instance);
         let found = [value(&model, false), value(&model, true)];
         assert!(agree(found[0], bound, 1e-9) && agree(found[1], best, 1e-9), "{at}: {found:?}");
     }

@@ -6,7 +6,7 @@
 use std::collections::BTreeMap;
 
 use catalogue::Class::{Clustered, Euclidean, Uniform, ZeroOne};
-use catalogue::{Class, Entry, Level, Order, generate, relations};
+use catalogue::{Class, Entry, Level, Order, Relation, generate, relations};
 use hullward_tests_reference::round_trip::{instance, rival, root, solve, tsplib};
 use hullward_tests_reference::seeded::{extent, families, seeded};
 use instance::{Datum, Instance};
@@ -46,28 +46,48 @@ fn sensed(id: &str, instance: &Instance) -> (Sense, f64) {
     (model.sense(), found.bound.unwrap())
 }
 
-#[test]
-fn published_relations_hold_in_every_family_on_every_class_of_data() {
-    let mut checked = 0;
+/// Every relation of a level, on every seeded instance of its family: 3 sizes, 5 classes of data and
+/// 10 seeds. Returns how many relations there are, and what does not hold.
+fn computed(level: Level) -> (usize, String) {
+    let (mut said, mut wrong) = (0, String::new());
     for family in families() {
-        let theorems: Vec<_> =
-            relations(&family).into_iter().filter(|r| r.level == Level::Theorem).collect();
+        let told: Vec<_> = relations(&family).into_iter().filter(|r| r.level == level).collect();
+        if told.is_empty() {
+            continue;
+        }
+        said += told.len();
         let extent = extent(&family);
-        for (name, instance) in seeded(&family, extent.bounds, extent.seeds) {
+        let on = seeded(&family, extent.bounds, extent.seeds);
+        assert!(on.len() >= 150, "{family}: {} instances", on.len());
+        for (name, instance) in on {
             let mut known = BTreeMap::new();
             let mut bound =
                 |id: &String| *known.entry(id.clone()).or_insert_with(|| sensed(id, &instance));
-            for relation in &theorems {
+            for relation in &told {
                 let ((sense, left), (_, right)) = (bound(&relation.left), bound(&relation.right));
-                assert!(
-                    holds(relation.order, sense, left, right),
-                    "{relation:?} on {name}: {left}, {right}"
-                );
-                checked += 1;
+                if !holds(relation.order, sense, left, right) {
+                    let Relation { left: a, order, right: b, .. } = relation;
+                    wrong += &format!("{a} {order:?} {b} on {name}: {left}, {right}\n");
+                }
             }
         }
     }
-    assert!(checked >= 8_000, "{checked} relations");
+    (said, wrong)
+}
+
+#[test]
+fn published_relations_hold_in_every_family_on_every_class_of_data() {
+    let (said, wrong) = computed(Level::Theorem);
+    assert!(wrong.is_empty(), "{wrong}");
+    assert!(said >= 125, "{said} relations");
+}
+
+/// Nobody has proved them to us; here they are seen again.
+#[test]
+fn observed_relations_are_seen_on_every_seeded_instance() {
+    let (said, wrong) = computed(Level::Observed);
+    assert!(wrong.is_empty(), "{wrong}");
+    assert!(said >= 20, "{said} relations");
 }
 
 /// An instance on which the bound of a rival beats that of the one that it is said to be

@@ -94,16 +94,15 @@ fn part(file: &str, part: usize) -> Option<Instance> {
     Some(reading.instance.unwrap_or_else(|| panic!("{file}: {:?}", reading.complaints)))
 }
 
-const ROWS: &str = "Several rows\ndata\n I  rows\n J  items\n p_j ∀ j ∈ J\n a_{i,j} ∀ i ∈ I, j ∈ J\n b_i ∀ i ∈ I\n\
-    maximise\n Σ_{j ∈ J} p_j x_j\nsubject to\n Σ_{j ∈ J} a_{i,j} x_j ≤ b_i ∀ i ∈ I (fit)\n x_j ∈ {0,1} ∀ j ∈ J\n";
-
 #[test]
 fn published_optima_of_knapsacks_with_several_rows() {
     let all =
         [(1, 3_800.0), (2, 8_706.1), (4, 6_120.0), (5, 12_400.0), (6, 10_618.0), (7, 16_537.0)];
     for (at, best) in all {
         let Some(instance) = part("mknap/mknap1.txt", at) else { return };
-        held(&format!("mknap1-{at}"), &formulation(ROWS, &instance), (best, 1e-6));
+        for id in ["multi-knapsack/plain", "multi-knapsack/covers"] {
+            held(&format!("{id} on mknap1-{at}"), &rival(id, &instance), (best, 1e-6));
+        }
     }
 }
 

@@ -69,16 +69,16 @@ pub(super) fn knapsack(size: u32, class: Class, seed: u64) -> Blocks {
 pub(super) fn several(size: u32, class: Class, seed: u64) -> Blocks {
     let mut draw = Draw::new(seed);
     let mut blocks = Blocks::new();
-    let items = blocks.labels("I", 'i', size as usize);
-    let resources = blocks.labels("R", 'r', 3);
+    let items = blocks.labels("J", 'j', size as usize);
+    let resources = blocks.labels("I", 'r', 3);
     let mut taken = vec![vec![0; items.len()]; resources.len()];
     for cell in taken.iter_mut().flatten() {
         *cell = draw.amount(class, 5, 45);
     }
-    let all = |i: usize| taken.iter().map(|row| row[i]).sum::<i64>();
-    blocks.column(("c", "i"), &items, |i| all(i) / 3 + draw.below(20));
-    blocks.table(("a", "r, i"), (&resources, &items), |r, i| Some(taken[r][i]));
-    blocks.column(("b", "r"), &resources, |r| taken[r].iter().sum::<i64>() / 2);
+    let all = |j: usize| taken.iter().map(|row| row[j]).sum::<i64>();
+    blocks.column(("p", "j"), &items, |j| all(j) / 3 + draw.below(20));
+    blocks.table(("a", "i, j"), (&resources, &items), |r, j| Some(taken[r][j]));
+    blocks.column(("b", "i"), &resources, |r| taken[r].iter().sum::<i64>() / 2);
     blocks
 }
 

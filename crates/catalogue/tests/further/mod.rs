@@ -147,8 +147,8 @@ fn added(id: &str, data: &Data<'_>) -> Option<Size> {
     let (n, i) = (data.count("V"), data.count("I"));
     let (drives, pairs) = (n * n.saturating_sub(1), n * n.saturating_sub(1) / 2);
     match id {
-        "multi-knapsack/plain" => Some((i, data.count("R"), 0)),
-        "multi-knapsack/covers" => Some((i, data.count("R"), data.count("R"))),
+        "multi-knapsack/plain" => Some((data.count("J"), i, 0)),
+        "multi-knapsack/covers" => Some((data.count("J"), i, i)),
         "cvrp/two-commodity" => Some((3 * drives, 4 * (n - 1) + drives, 0)),
         "cvrp/multi-commodity" => {
             Some((drives * (2 * n - 1), 2 * (n - 1) + 2 * drives + drives * n, 0))

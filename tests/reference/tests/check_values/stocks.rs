@@ -184,7 +184,7 @@ pub(crate) fn resources(record: &Record) -> Option<f64> {
             continue;
         }
         let on = instance(&format!(
-            "I\n{}\n\nR\n{}\n\nc by i\n{}\na by r, i\n{}\nb by r\n{}\n",
+            "J\n{}\n\nI\n{}\n\np by j\n{}\na by i, j\n{}\nb by i\n{}\n",
             names("i", n),
             names("r", m),
             row("i", &rest[3..3 + n]),

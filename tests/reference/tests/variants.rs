@@ -1,9 +1,8 @@
-//! Relaxations of round trips that the catalogue does not ship, written in notation, against stored
-//! values: labels with a looser multiplier, lifted rows without lifted bounds, tight flow (Gavish &
-//! Graves 1978), products of labels and drives (Sherali & Driscoll, Operations Research 50 (2002)
-//! 656-669), the fractional 2-matching (Dantzig, Fulkerson & Johnson 1954). And shipped ones from
-//! every depot: the bound of a directed label depends on it. Values with their sources:
-//! `fixtures/round_trips.json`.
+//! Further relaxations of round trips against stored values: labels with a looser multiplier, tight flow (Gavish &
+//! Graves 1978), products of labels and drives (Sherali & Driscoll, Operations Research 50 (2002) 656-669), the
+//! fractional 2-matching (Dantzig, Fulkerson & Johnson 1954), as they are shipped; and lifted rows without lifted
+//! bounds, which the catalogue does not ship. And bounds from every depot, for that of a directed label depends on
+//! it. Values with their sources: `fixtures/round_trips.json`.
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 
@@ -32,61 +31,27 @@ subject to
   0 ≤ x_{i,j} ≤ 1                              ∀ (i,j) ∈ A
 ";
 
-const LOOSE_LABELS: &str = "
-  u_i − u_j + n x_{i,j} ≤ n − 1                ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (order)
-  1 ≤ u_i ≤ n − 1                              ∀ i ∈ V : i ≠ r
-";
-
 const LIFTED_ROWS: &str = "
   u_i − u_j + (n−1) x_{i,j} + (n−3) x_{j,i} ≤ n − 2    ∀ (i,j) ∈ A : i ≠ r, j ≠ r   (order)
   1 ≤ u_i ≤ n − 1                              ∀ i ∈ V : i ≠ r
 ";
 
-const TIGHT_FLOW: &str = "
-  Σ_{j : (i,j) ∈ A} g_{i,j} − Σ_{j : (j,i) ∈ A} g_{j,i} = 1    ∀ i ∈ V : i ≠ r   (collect)
-  x_{i,j} ≤ g_{i,j}                            ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (least)
-  g_{i,j} ≤ (n−2) x_{i,j}                      ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (most)
-  g_{i,r} = (n−1) x_{i,r}                      ∀ i ∈ V : i ≠ r                 (home)
-  g_{r,j} = 0                                  ∀ j ∈ V : j ≠ r                 (empty)
-  g_{i,j} ≥ 0                                  ∀ (i,j) ∈ A
-";
-
-const PRODUCTS: &str = "
-  Σ_{j : (i,j) ∈ A, j ≠ r} y_{i,j} + (n−1) x_{i,r} = u_i      ∀ i ∈ V : i ≠ r     (from)
-  Σ_{i : (i,j) ∈ A, i ≠ r} y_{i,j} + 1 = u_j                  ∀ j ∈ V : j ≠ r     (to)
-  x_{i,j} ≤ y_{i,j}                            ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (least)
-  y_{i,j} ≤ (n−2) x_{i,j}                      ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (most)
-  u_j + (n−2) x_{i,j} − (n−1) + (n−1) x_{j,i} ≤ y_{i,j} + y_{j,i}
-      ∀ (i,j) ∈ A : i ≠ r, j ≠ r                                               (under)
-  y_{i,j} + y_{j,i} ≤ u_j − 1 + x_{j,i}        ∀ (i,j) ∈ A : i ≠ r, j ≠ r      (over)
-  2 − x_{r,i} + (n−3) x_{i,r} ≤ u_i            ∀ i ∈ V : i ≠ r                 (earliest)
-  u_i ≤ n − 2 − (n−3) x_{r,i} + x_{i,r}        ∀ i ∈ V : i ≠ r                 (latest)
-  y_{i,j} ≥ 0                                  ∀ (i,j) ∈ A : i ≠ r, j ≠ r
-  1 ≤ u_i ≤ n − 1                              ∀ i ∈ V : i ≠ r
-";
-
-const TWO_MATCHING: &str = "
-data
-  V                                      stops
-  A ⊆ V × V                              drives
-  c_{i,j}  ∀ (i,j) ∈ A                   cost
-minimise
-  Σ_{(i,j) ∈ A : i < j} c_{i,j} x_{i,j}
-subject to
-  Σ_{j ∈ V : i < j} x_{i,j} + Σ_{j ∈ V : j < i} x_{j,i} = 2      ∀ i ∈ V      (degree)
-  0 ≤ x_{i,j} ≤ 1                              ∀ (i,j) ∈ A : i < j
-";
+/// The shipped rival of a name in the fixture.
+fn shipped(variant: &str) -> &str {
+    match variant {
+        "variant/two-matching" => "tsp/degrees",
+        "variant/loose-labels" => "atsp/loose-labels",
+        "variant/tight-flow" => "atsp/tight-one-commodity",
+        "variant/products" => "atsp/rlt-labels",
+        rival => rival,
+    }
+}
 
 fn model(variant: &str, instance: &Instance) -> Rc<Model> {
-    let rows = match variant {
-        "variant/two-matching" => return formulation(TWO_MATCHING, instance),
-        "variant/loose-labels" => LOOSE_LABELS,
-        "variant/lifted-rows" => LIFTED_ROWS,
-        "variant/tight-flow" => TIGHT_FLOW,
-        "variant/products" => PRODUCTS,
-        shipped => return formulation(catalogue::find(shipped).unwrap().text, instance),
-    };
-    formulation(&format!("{LEAVE_AND_ENTER}{rows}"), instance)
+    if variant == "variant/lifted-rows" {
+        return formulation(&format!("{LEAVE_AND_ENTER}{LIFTED_ROWS}"), instance);
+    }
+    formulation(catalogue::find(shipped(variant)).unwrap().text, instance)
 }
 
 /// Every stored bound of a variant on instances of at most so many columns.

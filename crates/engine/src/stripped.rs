@@ -240,7 +240,7 @@ fn notes(scenario: &Scenario, factor: &Number) -> Vec<String> {
         );
     }
     if *factor == Number::ONE {
-        notes.push("numbers are as they were; --scale multiplies the costs".to_owned());
+        notes.push("numbers are as they were; a factor would multiply the costs".to_owned());
     }
     notes
 }

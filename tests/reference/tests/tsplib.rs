@@ -98,7 +98,7 @@ fn optima_of_compact_rivals() {
         assert!((found - value.value).abs() < 1e-6, "{name}: {found} for {}", value.value);
         seen += 1;
     }
-    assert_eq!(seen, 6);
+    assert_eq!(seen, 9);
 }
 
 /// Subtours on demand close each of these to its published optimum.

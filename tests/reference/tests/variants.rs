@@ -1,7 +1,7 @@
 //! Further relaxations of round trips against stored values: labels with a looser multiplier, tight flow (Gavish &
 //! Graves 1978), products of labels and drives (Sherali & Driscoll, Operations Research 50 (2002) 656-669), the
 //! fractional 2-matching (Dantzig, Fulkerson & Johnson 1954), as they are shipped; and lifted rows without lifted
-//! bounds, which the catalogue does not ship. And bounds from every depot, for that of a directed label depends on
+//! bounds and time stages with one drive at a time, which the catalogue does not ship. And bounds from every depot, for that of a directed label depends on
 //! it. Values with their sources: `fixtures/round_trips.json`.
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
@@ -43,6 +43,7 @@ fn shipped(variant: &str) -> &str {
         "variant/loose-labels" => "atsp/loose-labels",
         "variant/tight-flow" => "atsp/tight-one-commodity",
         "variant/products" => "atsp/rlt-labels",
+        "variant/time-staged" => "atsp/time-staged",
         rival => rival,
     }
 }
@@ -51,7 +52,12 @@ fn model(variant: &str, instance: &Instance) -> Rc<Model> {
     if variant == "variant/lifted-rows" {
         return formulation(&format!("{LEAVE_AND_ENTER}{LIFTED_ROWS}"), instance);
     }
-    formulation(catalogue::find(shipped(variant)).unwrap().text, instance)
+    let text = catalogue::find(shipped(variant)).unwrap().text;
+    if variant == "variant/time-staged" {
+        let stage = "(next leg)\n  Σ_{(i,j) ∈ A} w_{t,i,j} = 1  ∀ t ∈ T  (one a time)\n";
+        return formulation(&text.replace("(next leg)\n", stage), instance);
+    }
+    formulation(text, instance)
 }
 
 /// Every stored bound of a variant on instances of at most so many columns.
@@ -87,6 +93,16 @@ fn tight_flow() {
 #[test]
 fn products_of_labels_and_drives() {
     bounds_agree("variant/products", (2_500, 9));
+}
+
+/// Time stages with one drive at a time (Fox, Gavish & Graves 1980; the shipped rival joins the legs), legs (Picard & Queyranne 1978), precedence (Sarin, Sherali & Bhootra 2005)
+/// and labels with precedence (Gouveia & Pires 1999).
+#[test]
+fn stages_legs_and_precedence() {
+    bounds_agree("variant/time-staged", (5_000, 4));
+    bounds_agree("atsp/legs", (5_000, 4));
+    bounds_agree("atsp/precedence", (2_000, 5));
+    bounds_agree("atsp/lifted-precedence-labels", (2_000, 5));
 }
 
 #[test]

@@ -75,7 +75,11 @@ const ELSEWHERE: [(&str, &str); 8] = [
 
 /// What is not held: the problem, words of its formulation or instance, and why.
 const LEFT: [(&str, &str, &str); 22] = [
-    ("TSP", "", "a figure told twice, or derived from others that are held"),
+    (
+        "TSP",
+        "",
+        "a figure told twice, or derived from others that are held, or of more columns than a test takes",
+    ),
     (
         "ATSP",
         "",

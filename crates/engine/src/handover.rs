@@ -132,10 +132,15 @@ pub(crate) fn handed_over(form: Form, job: LaneJob) -> Reply {
         Form::Latex => latex(&scenario, 0),
         Form::Text => notation_text(&scenario, 0),
     };
+    written(made.map(|HandOver { text, notes, .. }| (text, notes)), "rival")
+}
+
+/// A text with its notes as an answer to the page; or why there is none, and whose fault that is.
+pub(crate) fn written(made: Result<(String, Vec<String>), Refusal>, place: &str) -> Reply {
     match made {
-        Ok(HandOver { text, notes, .. }) => Reply::Written(Box::new(Written { text, notes })),
+        Ok((text, notes)) => Reply::Written(Box::new(Written { text, notes })),
         Err(Refusal::Wrong(error)) => Reply::Failed(error),
-        Err(Refusal::Broken(what)) => Reply::Failed(fault("rival", what)),
+        Err(Refusal::Broken(what)) => Reply::Failed(fault(place, what)),
     }
 }
 

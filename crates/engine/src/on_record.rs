@@ -1,16 +1,14 @@
-//! What a decision record needs of the engine: each rival as it is written; and a scenario without names
-//! for the page.
+//! What a decision record repeats of its scenario: each rival as it is written, and the first instance.
 
 use record::file;
-use record::handover::{Stated, Statement, Written};
+use record::handover::{Stated, Statement};
 use record::message::Reply;
 use record::scenario::Scenario;
 
 use crate::check::typeset;
 use crate::fault::fault;
-use crate::handover::{Refusal, notation_text};
+use crate::handover::notation_text;
 use crate::readings::instance_report;
-use crate::stripped::stripped;
 
 /// Each rival as it is written, and what is understood of the first instance.
 #[must_use]
@@ -33,20 +31,5 @@ pub(crate) fn stated_of(text: &str) -> Reply {
     match file::parse(text).scenario {
         Some(scenario) => Reply::Stated(Box::new(stated(&scenario))),
         None => Reply::Failed(fault("scenario", "the scenario cannot be read")),
-    }
-}
-
-/// The answer to a page that strips a scenario of its names.
-pub(crate) fn stripped_of(text: &str, factor: &str) -> Reply {
-    let Some(scenario) = file::parse(text).scenario else {
-        return Reply::Failed(fault("scenario", "the scenario cannot be read"));
-    };
-    match stripped(&scenario, factor) {
-        Ok(bare) => {
-            let (text, notes) = (file::print(&bare.scenario), bare.notes);
-            Reply::Written(Box::new(Written { text, notes }))
-        }
-        Err(Refusal::Wrong(error)) => Reply::Failed(error),
-        Err(Refusal::Broken(what)) => Reply::Failed(fault("scenario", what)),
     }
 }

@@ -10,11 +10,13 @@ use std::collections::BTreeMap;
 
 use instance::{Datum, Instance, Number, blocks_text};
 use model::Model;
+use record::file;
+use record::message::Reply;
 use record::results::ErrorReport;
 use record::scenario::{InstanceText, Rival, Scenario, letter};
 
 use crate::fault::fault;
-use crate::handover::Refusal;
+use crate::handover::{Refusal, written};
 use crate::load::{formulation, load};
 use crate::readings::Readings;
 use names::Names;
@@ -27,6 +29,17 @@ pub struct Stripped {
     pub scenario: Scenario,
     /// What who takes it should know, one sentence each.
     pub notes: Vec<String>,
+}
+
+/// The answer to a page that strips a scenario, given as text, of its names.
+pub(crate) fn stripped_of(text: &str, factor: &str) -> Reply {
+    match file::parse(text).scenario {
+        Some(scenario) => {
+            let bare = stripped(&scenario, factor);
+            written(bare.map(|bare| (file::print(&bare.scenario), bare.notes)), "scenario")
+        }
+        None => Reply::Failed(fault("scenario", "the scenario cannot be read")),
+    }
 }
 
 /// The scenario without names, its costs multiplied by a positive decimal number.

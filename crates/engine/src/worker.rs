@@ -13,9 +13,10 @@ use crate::fault::fault;
 use crate::handover::handed_over;
 use crate::lane::Lane;
 use crate::map::{catalogue_entries, guide_sections};
-use crate::on_record::{stated_of, stripped_of};
+use crate::on_record::stated_of;
 use crate::outbox::Outbox;
 use crate::readings::Readings;
+use crate::stripped::stripped_of;
 use crate::studies::StudyRun;
 use crate::warm::warm;
 

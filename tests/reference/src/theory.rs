@@ -32,7 +32,7 @@ pub fn table(instance: &Instance, name: &str) -> BTreeMap<Vec<String>, f64> {
 }
 
 /// The least of some numbers; infinity of none.
-fn least(numbers: impl Iterator<Item = f64>) -> f64 {
+pub fn least(numbers: impl Iterator<Item = f64>) -> f64 {
     numbers.fold(f64::INFINITY, |least, number| if number < least { number } else { least })
 }
 

@@ -1,6 +1,7 @@
 //! The ready scenarios settle a question, and what their notes say of it is so: the bound of every
 //! rival stands in them as it is computed, and the optimum; every number of columns or rows that is
-//! named is that of a rival, or how far two are apart; every number with a point is a bound.
+//! named is that of a rival, or how far two are apart; every number with a point is a bound; every number of
+//! nodes that stands behind "Decided" is that of a rival's tree.
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 
@@ -12,18 +13,21 @@ use record::scenario::Scenario;
 use tree::{Settings, Status};
 
 /// What is computed of a scenario.
+#[derive(Default)]
 struct Facts {
     bounds: Vec<f64>,
     columns: Vec<usize>,
     rows: Vec<usize>,
-    optimum: f64,
+    /// Nodes of the trees that are searched to their end.
+    nodes: Vec<usize>,
+    optimum: Option<f64>,
 }
 
 fn facts(scenario: &Scenario) -> Facts {
     let given = scenario.instance.as_ref().unwrap();
     let reading = instance::read(&given.text, given.reader.as_deref().and_then(Reader::from_name));
     let on = reading.instance.unwrap();
-    let mut found = Facts { bounds: vec![], columns: vec![], rows: vec![], optimum: f64::NAN };
+    let mut found = Facts::default();
     for one in &scenario.rivals {
         let id = one.from.as_deref().unwrap();
         let model = rival(id, &on);
@@ -32,11 +36,14 @@ fn facts(scenario: &Scenario) -> Facts {
         found.rows.push(model.row_count());
         let entry = catalogue::find(id).unwrap();
         // Of a weak rival the tree may be large: one that is searched to its end is enough.
-        if !entry.relaxation && found.optimum.is_nan() {
-            let settings = Settings { node_limit: Some(400), ..Settings::default() };
+        let counted = scenario.notes.contains("nodes of");
+        if !entry.relaxation && (counted || found.optimum.is_none()) {
+            let limit = if counted { 2_000 } else { 400 };
+            let settings = Settings { node_limit: Some(limit), ..Settings::default() };
             let summary = solve(&model, settings);
             if summary.status == Status::Optimal {
-                found.optimum = summary.incumbent.unwrap();
+                found.optimum = summary.incumbent;
+                found.nodes.push(summary.nodes as usize);
             }
         }
     }
@@ -80,8 +87,8 @@ fn wrong(name: &str, scenario: &Scenario) -> Vec<String> {
             out.push(format!("{name}: the bound {bound} of {} is not told", one.title));
         }
     }
-    if !stands(found.optimum) {
-        out.push(format!("{name}: the optimum {} is not told", found.optimum));
+    if !found.optimum.is_some_and(stands) {
+        out.push(format!("{name}: the optimum {:?} is not told", found.optimum));
     }
     for (number, next) in &said {
         let of = |sizes: &[usize]| {
@@ -91,8 +98,11 @@ fn wrong(name: &str, scenario: &Scenario) -> Vec<String> {
         let so = match next.as_str() {
             "columns" => of(&found.columns),
             "rows" => of(&found.rows),
+            "nodes" if scenario.notes.contains("nodes of") => {
+                found.nodes.iter().any(|nodes| nodes.to_string() == *number)
+            }
             _ if number.contains('.') => {
-                let known = found.bounds.iter().chain([&found.optimum]);
+                let known = found.bounds.iter().chain(&found.optimum);
                 known.into_iter().any(|&value| is_printed(number, value))
             }
             _ => true,

@@ -10,7 +10,7 @@ use std::collections::BTreeMap;
 use hullward_tests_reference::agree;
 use hullward_tests_reference::round_trip::{rival, solve};
 use hullward_tests_reference::seeded::{extent, seeded};
-use hullward_tests_reference::theory::{labels, table};
+use hullward_tests_reference::theory::{labels, least, table};
 use instance::{Datum, Instance};
 use model::nearest_f64;
 use tree::{Settings, Status};
@@ -23,11 +23,6 @@ fn number(on: &Instance, name: &str) -> f64 {
 fn element(on: &Instance, name: &str) -> String {
     let Some(Datum::Element(label)) = on.get(name) else { panic!("no element {name}") };
     label.clone()
-}
-
-/// The smallest number; infinity of none.
-fn least(numbers: impl Iterator<Item = f64>) -> f64 {
-    numbers.fold(f64::INFINITY, |least, number| if number < least { number } else { least })
 }
 
 fn largest(numbers: impl Iterator<Item = f64>) -> f64 {

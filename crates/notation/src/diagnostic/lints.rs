@@ -138,7 +138,7 @@ pub(crate) fn twin_rows(
 /// Rows of an edge within the row of a clique.
 pub(crate) fn within_clique(
     family: &str,
-    (rows, one, other): (usize, &str, &str),
+    (rows, one, other): (&str, &str, &str),
     span: Span,
 ) -> Diagnostic {
     let message = format!(

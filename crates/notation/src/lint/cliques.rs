@@ -9,7 +9,7 @@ use super::Subject;
 use super::facts::Facts;
 use crate::diagnostic::{Diagnostic, lints as message};
 
-/// Steps of comparing after which no further row is looked at: the same on every machine.
+/// Steps of comparing after which no further row is looked at, which is told: the same on every machine.
 const LIMIT: usize = 2_000_000;
 
 /// Families half of whose rows, or more, lie within others, each with an example.
@@ -36,11 +36,12 @@ pub(super) fn lint(subject: &Subject<'_>) -> Vec<Diagnostic> {
             let all = model.families()[family].rows.len();
             let (one, other) = (model.row_name(pairs[0].0), model.row_name(pairs[0].1));
             let name = &model.families()[family].name;
-            let told = message::within_clique(
-                name,
-                (pairs.len(), &one, &other),
-                subject.family_span(family),
-            );
+            let rows = match steps > LIMIT {
+                true => format!("at least {}", pairs.len()),
+                false => pairs.len().to_string(),
+            };
+            let span = subject.family_span(family);
+            let told = message::within_clique(name, (&rows, &one, &other), span);
             let elsewhere = pairs.iter().all(|(_, larger)| facts.family(*larger) != family);
             match subject.line(family) {
                 Some(line) if pairs.len() == all && elsewhere => {

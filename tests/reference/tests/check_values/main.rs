@@ -118,7 +118,11 @@ const LEFT: [(&str, &str, &str); 22] = [
     ),
     ("job shop", "trivial", "held in published.rs, as the bound by ranks"),
     ("job shop", "disjunctive", "held in published.rs"),
-    ("CVRP", "optimum", "those up to 33 stops are held in published.rs, the others as plans"),
+    (
+        "CVRP",
+        "optimum",
+        "those up to 33 stops are held in published.rs, E-n51-k5 as a plan; E-n30-k3 is that of three vehicles",
+    ),
     ("CVRP", "all S", "every subset of customers: held by separation in published.rs"),
     ("CVRP", "elementary", "rounds by the ten thousand"),
     ("p-median", "", "pmed1 and pmed5 are held in published.rs"),

@@ -12,8 +12,10 @@
 //! | what | why |
 //! |---|---|
 //! | blossoms, combs, D-inequalities, source-destination and other facets of round trips | classes of general cuts where the search has them; blossoms also as odd cuts, `tsp/blossoms` |
-//! | rows of partitions and odd holes (Steiner trees), 2-partitions (groups), Möbius ladders and fences (orders), antiholes and wheels (stable sets) | they range over partitions, circles or pairs of sets, and a family here ranges over one set |
-//! | circles on demand (maximum cut, orders) | the same; on complete graphs triangles and 3-dicycles say as much |
+//! | rows of partitions and odd holes (Steiner trees), larger 2-partitions (groups), Möbius ladders and larger fences (orders), antiholes and larger wheels (stable sets) | they range over partitions, circles or pairs of sets, and a family here ranges over one set; the smallest of each are written out in `grouping/two-partitions`, `ordering/fences`, `stable-set/wheels` |
+//! | circles on demand (maximum cut, stable sets, orders) | the same; as distances in `max-cut/odd-cycles` and `stable-set/every-odd-cycle`, and of orders the 3-dicycles say as much |
+//! | cuts of all goods together (network design) | what goods send over a cut hangs on both ends, which the right-hand side of a family over sets cannot; of one node in `capacitated-design/node-cuts` |
+//! | lifted bounds of paths over hubs (Hamacher et al. 2004) | of places that may use several hubs, another problem |
 //! | lifted and extended covers, flow covers, flow packs, submodular and residual capacity rows | their coefficients come out of an algorithm: general cuts; the last are what `lines/multiple-choice` says |
 //! | constants of Gilmore and Lawler (Xia & Yuan 2006) | each is the optimum of an assignment, and no expression; `qap/least-ways` has a simpler one |
 //! | facilities as set packing; p-median by substitution (Church 2003) | other columns for the same rows; sets of nearer sites that are equal cannot be asked for in an expression |

@@ -31,9 +31,9 @@ pub(crate) const FAMILIES: &[Family] = &[
         "atsp": "assignment", "labels", "lifted-labels", "one-commodity", "two-commodity",
         "multi-commodity", "subtours", "cuts", "tight-one-commodity", "time-staged", "legs",
         "precedence-labels", "precedence", "rlt-labels", "loose-labels",
-        "lifted-precedence-labels"
+        "lifted-precedence-labels", "one-at-a-time", "lifted-rows"
     ),
-    family!("tsp": "subtours", "degrees", "two-commodity", "blossoms"),
+    family!("tsp": "subtours", "degrees", "two-commodity", "blossoms", "multi-commodity"),
     family!("path": "flow", "potentials"),
     family!("ufl": "joined", "split", "radii"),
     family!(
@@ -50,22 +50,27 @@ pub(crate) const FAMILIES: &[Family] = &[
     family!("p-centre": "assignment", "radius"),
     family!(
         "tree": "labels", "one-commodity", "cuts", "subtours", "directed-cuts",
-        "multi-commodity", "arborescences", "undirected-flow"
+        "multi-commodity", "arborescences", "undirected-flow", "directed-flow"
     ),
     family!(
         "steiner": "one-commodity", "cuts", "undirected-flow", "directed-cuts",
-        "multi-commodity", "balanced-cuts", "nodes"
+        "multi-commodity", "balanced-cuts", "nodes", "directed-flow"
     ),
     family!("design": "joined", "split", "by-origin", "paths"),
+    family!("capacitated-design": "joined", "by-origin", "split", "paths", "node-cuts"),
     family!("matching": "degree", "odd-sets"),
-    family!("stable-set": "stars", "edges", "cliques", "odd-cycles"),
+    family!(
+        "stable-set": "stars", "edges", "cliques", "odd-cycles", "wheels", "every-odd-cycle"
+    ),
     family!(
         "colouring": "assignment", "ordered", "cliques", "representatives", "partial-order",
         "stable-sets"
     ),
-    family!("ordering": "labels", "dicycles"),
-    family!("max-cut": "sides", "triangles"),
-    family!("grouping": "triangles", "assignment", "representatives", "groups"),
+    family!("ordering": "labels", "dicycles", "fences"),
+    family!("max-cut": "sides", "odd-cycles", "triangles"),
+    family!(
+        "grouping": "triangles", "assignment", "representatives", "groups", "two-partitions"
+    ),
     family!("hub": "paths", "flow", "bounded-paths"),
     family!("clsp": "big-m", "location-form", "l-s", "shortest-path-form"),
     family!(
@@ -94,7 +99,7 @@ pub(crate) const FAMILIES: &[Family] = &[
         "elementary-path": "labels", "one-commodity", "multi-commodity", "subtours"
     ),
     family!("multi-knapsack": "plain", "covers"),
-    family!("quadratic": "products", "row-sums", "triangles"),
+    family!("quadratic": "products", "row-sums", "triangles", "rlt-2"),
     family!("cases": "loose", "big-m", "multi-m", "hull"),
     family!("tardiness": "big-m", "linear-ordering", "time-indexed"),
     family!("lines": "joined", "split", "multiple-choice"),

@@ -112,11 +112,15 @@ fn on_instances(mut check: impl FnMut(&Entry, Class, &Instance)) {
 /// What the data may bring about: no row for what small or complete data lack (a drive without a
 /// drive back, a load too large for one vehicle, two in conflict that a third could represent), and
 /// two radii between which a client has no site.
-const BY_THE_DATA: [(&str, &str); 11] = [
+const BY_THE_DATA: [(&str, &str); 16] = [
     ("row.empty-family", "atsp/lifted-labels"),
+    ("row.empty-family", "atsp/lifted-rows"),
     ("row.empty-family", "atsp/rlt-labels"),
     ("row.empty-family", "atsp/lifted-precedence-labels"),
     ("row.empty-family", "stable-set/odd-cycles"),
+    ("row.empty-family", "stable-set/wheels"),
+    ("row.empty-family", "ordering/fences"),
+    ("row.empty-family", "capacitated-design/node-cuts"),
     ("row.empty-family", "colouring/partial-order"),
     ("row.empty-family", "cvrp/lifted-load-labels"),
     ("row.empty-family", "colouring/representatives"),
@@ -124,6 +128,7 @@ const BY_THE_DATA: [(&str, &str); 11] = [
     ("lint.twin-rows", "cases/multi-m"),
     ("lint.twin-rows", "p-centre/radius"),
     ("lint.twin-rows", "stable-set/odd-cycles"),
+    ("lint.twin-rows", "stable-set/wheels"),
 ];
 
 #[test]

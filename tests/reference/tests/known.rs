@@ -15,7 +15,7 @@ use hullward_tests_reference::seeded::{extent, families, seeded};
 use tree::Settings;
 
 /// The left rival, how it stands to the right one, and how far that is known.
-const KNOWN: [(&str, &str, &str, Level); 115] = [
+const KNOWN: [(&str, &str, &str, Level); 119] = [
     ("atsp/labels", "⪰", "atsp/assignment", Theorem),
     ("atsp/subtours", "⪰", "atsp/labels", Theorem),
     ("atsp/subtours", "⪰", "atsp/one-commodity", Theorem),
@@ -83,6 +83,7 @@ const KNOWN: [(&str, &str, &str, Level); 115] = [
     ("steiner/nodes", "=", "steiner/directed-cuts", Theorem),
     ("design/split", "⪰", "design/joined", Theorem),
     ("design/split", "⪰", "design/by-origin", Theorem),
+    ("capacitated-design/split", "⪰", "capacitated-design/joined", Theorem),
     ("lines/multiple-choice", "⪰", "lines/joined", Theorem),
     ("bins/arc-flow", "=", "bins/patterns", Theorem),
     ("bins/one-cut", "=", "bins/patterns", Theorem),
@@ -128,6 +129,9 @@ const KNOWN: [(&str, &str, &str, Level); 115] = [
     ("ordering/dicycles", "⪰", "ordering/labels", Observed),
     ("quadratic/products", "⪰", "quadratic/row-sums", Theorem),
     ("quadratic/triangles", "⪰", "quadratic/products", Theorem),
+    ("quadratic/rlt-2", "⪰", "quadratic/products", Theorem),
+    ("max-cut/odd-cycles", "=", "max-cut/triangles", Theorem),
+    ("grouping/two-partitions", "⪰", "grouping/triangles", Theorem),
     ("hub/paths", "⪰", "hub/flow", Theorem),
     ("cases/hull", "⪰", "cases/big-m", Theorem),
     ("cases/big-m", "⪰", "cases/loose", Observed),

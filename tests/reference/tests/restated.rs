@@ -102,6 +102,11 @@ const SHIPPED: &[(&str, &str, &str)] = &[
 type Edited = (&'static str, &'static str, &'static str, &'static [(&'static str, &'static str)]);
 
 const EDGES: (&str, &str) = ("  x(E) = |V| − 1 ", "  x(E) ≥ 0 ");
+/// The golden flows on ways enter a node as often as they want.
+const WAYS: (&str, &str) = ("  z_{i,j} + z_{j,i} = x_{i,j} ", "  z_{i,j} + z_{j,i} ≤ x_{i,j} ");
+const ENTER: (&str, &str) =
+    ("  Σ_{i : (i,j) ∈ A} z_{i,j} = 1 ", "  Σ_{i : (i,j) ∈ A} z_{i,j} ≥ 0 ");
+const ROOT: (&str, &str) = ("  Σ_{i : (i,r) ∈ A} z_{i,r} = 0 ", "  Σ_{i : (i,r) ∈ A} z_{i,r} ≥ 0 ");
 const NEED: (&str, &str) =
     ("  Σ_{i ∈ I} x_i ≥ d ", "  Σ_{i ∈ I} ω_i x_i ≤ Ω  (resource)\n  Σ_{i ∈ I} x_i = d ");
 const RESOURCE: (&str, &str) = ("definitions\n", "  ω_i ∀ i ∈ I\n  Ω  resource\ndefinitions\n");
@@ -147,35 +152,8 @@ const EDITED: &[Edited] = &[
     ("mst__ucut", "mst", "tree/cuts", &[EDGES]),
     ("mst__mcf_undir", "mst", "tree/undirected-flow", &[EDGES]),
     ("mst__scf", "mst", "tree/one-commodity", &[EDGES]),
-    (
-        "mst__scf_dir",
-        "mst",
-        "tree/one-commodity",
-        &[
-            EDGES,
-            (" f_{i,j} ≤ (n−1) x_{i,j} ", " f_{i,j} ≤ (n−1) z_{i,j} "),
-            (" f_{j,i} ≤ (n−1) x_{i,j} ", " f_{j,i} ≤ (n−1) z_{j,i} "),
-            (
-                "  f_{i,j} ≥ 0 ",
-                "  z_{i,j} + z_{j,i} ≤ x_{i,j}  ∀ (i,j) ∈ E\n  z_{i,j}, f_{i,j} ≥ 0 ",
-            ),
-        ],
-    ),
-    (
-        "steiner__scf_dir",
-        "steiner",
-        "steiner/one-commodity",
-        &[
-            (
-                "  f_{i,j} + f_{j,i} ≤ (m−1) x_{i,j}         ∀ (i,j) ∈ E ",
-                "  f_{i,j} ≤ (m−1) z_{i,j}  ∀ (i,j) ∈ A ",
-            ),
-            (
-                "  f_{i,j} ≥ 0 ",
-                "  z_{i,j} + z_{j,i} ≤ x_{i,j}  ∀ (i,j) ∈ E\n  z_{i,j}, f_{i,j} ≥ 0 ",
-            ),
-        ],
-    ),
+    ("mst__scf_dir", "mst", "tree/directed-flow", &[WAYS, ENTER, ROOT]),
+    ("steiner__scf_dir", "steiner", "steiner/directed-flow", &[ENTER, ROOT]),
     ("stableset__clique_odd", "stableset", "stable-set/cliques", &[NEIGHBOURS, PENTAGONS]),
     (
         "qap__XY",

@@ -1,40 +1,17 @@
 //! Further relaxations of round trips against stored values: labels with a looser multiplier, tight flow (Gavish &
 //! Graves 1978), products of labels and drives (Sherali & Driscoll, Operations Research 50 (2002) 656-669), the
-//! fractional 2-matching (Dantzig, Fulkerson & Johnson 1954), as they are shipped; and lifted rows without lifted
-//! bounds and time stages with one drive at a time, which the catalogue does not ship. And bounds from every depot, for that of a directed label depends on
-//! it. Values with their sources: `fixtures/round_trips.json`.
+//! fractional 2-matching (Dantzig, Fulkerson & Johnson 1954), lifted rows without lifted bounds (Desrochers &
+//! Laporte 1991) and time stages with one drive at a time (Fox, Gavish & Graves 1980), as they are shipped. And
+//! bounds from every depot, for that of a directed label depends on it. Values with their sources: `fixtures/round_trips.json`.
 
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 
 use std::rc::Rc;
 
-use hullward_tests_reference::round_trip::{
-    check_bound, formulation, from_depot, root, tsplib, values,
-};
+use hullward_tests_reference::round_trip::{check_bound, from_depot, rival, root, tsplib, values};
 use hullward_tests_reference::theory::labels;
 use instance::Instance;
 use model::Model;
-
-const LEAVE_AND_ENTER: &str = "
-data
-  V                                      stops
-  A ⊆ V × V                              drives
-  c_{i,j}  ∀ (i,j) ∈ A                   cost
-  r ∈ V                                  depot
-definitions
-  n = |V|
-minimise
-  Σ_{(i,j) ∈ A} c_{i,j} x_{i,j}
-subject to
-  Σ_{j : (i,j) ∈ A} x_{i,j} = 1                ∀ i ∈ V        (leave)
-  Σ_{i : (i,j) ∈ A} x_{i,j} = 1                ∀ j ∈ V        (enter)
-  0 ≤ x_{i,j} ≤ 1                              ∀ (i,j) ∈ A
-";
-
-const LIFTED_ROWS: &str = "
-  u_i − u_j + (n−1) x_{i,j} + (n−3) x_{j,i} ≤ n − 2    ∀ (i,j) ∈ A : i ≠ r, j ≠ r   (order)
-  1 ≤ u_i ≤ n − 1                              ∀ i ∈ V : i ≠ r
-";
 
 /// The shipped rival of a name in the fixture.
 fn shipped(variant: &str) -> &str {
@@ -43,21 +20,14 @@ fn shipped(variant: &str) -> &str {
         "variant/loose-labels" => "atsp/loose-labels",
         "variant/tight-flow" => "atsp/tight-one-commodity",
         "variant/products" => "atsp/rlt-labels",
-        "variant/time-staged" => "atsp/time-staged",
+        "variant/time-staged" => "atsp/one-at-a-time",
+        "variant/lifted-rows" => "atsp/lifted-rows",
         rival => rival,
     }
 }
 
 fn model(variant: &str, instance: &Instance) -> Rc<Model> {
-    if variant == "variant/lifted-rows" {
-        return formulation(&format!("{LEAVE_AND_ENTER}{LIFTED_ROWS}"), instance);
-    }
-    let text = catalogue::find(shipped(variant)).unwrap().text;
-    if variant == "variant/time-staged" {
-        let stage = "(next leg)\n  Σ_{(i,j) ∈ A} w_{t,i,j} = 1  ∀ t ∈ T  (one a time)\n";
-        return formulation(&text.replace("(next leg)\n", stage), instance);
-    }
-    formulation(text, instance)
+    rival(shipped(variant), instance)
 }
 
 /// Every stored bound of a variant on instances of at most so many columns.
@@ -95,7 +65,7 @@ fn products_of_labels_and_drives() {
     bounds_agree("variant/products", (2_500, 9));
 }
 
-/// Time stages with one drive at a time (Fox, Gavish & Graves 1980; the shipped rival joins the legs), legs (Picard & Queyranne 1978), precedence (Sarin, Sherali & Bhootra 2005)
+/// Time stages with one drive at a time (Fox, Gavish & Graves 1980), legs (Picard & Queyranne 1978), precedence (Sarin, Sherali & Bhootra 2005)
 /// and labels with precedence (Gouveia & Pires 1999).
 #[test]
 fn stages_legs_and_precedence() {

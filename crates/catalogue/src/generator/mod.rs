@@ -88,7 +88,7 @@ impl Class {
 /// | `cvrp` | depot and customers; all rounds, of up to 13 places |
 /// | `cfl`, `p-median`, `p-centre` | sites, twice as many clients |
 /// | `tree`, `steiner` | nodes, half of which are to be connected |
-/// | `design` | nodes, about as many pairs with goods; all paths, of up to 12 nodes |
+/// | `design`, `capacitated-design` | nodes, about as many pairs with goods; all paths, of up to 12 nodes |
 /// | `lines` | nodes: half of it and 2, about as many pairs with traffic |
 /// | `matching`, `max-cut`, `stable-set` | nodes |
 /// | `colouring` | nodes; all stable sets, of up to 12 nodes |
@@ -136,6 +136,7 @@ fn maker(family: &str) -> Option<Make> {
         "tree" => graphs::tree,
         "steiner" => graphs::steiner,
         "design" => networks::design,
+        "capacitated-design" => networks::capacitated,
         "lines" => networks::lines,
         "matching" | "max-cut" => graphs::worths,
         "stable-set" => graphs::conflicts,

@@ -38,8 +38,31 @@ pub(super) fn vehicles(size: u32, class: Class, seed: u64) -> Blocks {
 /// goods as there are nodes, with all paths of each. To build costs about as much as to carry a
 /// few units.
 pub(super) fn design(size: u32, class: Class, seed: u64) -> Blocks {
-    let (mut out, arcs, pairs) = traffic(&mut Draw::new(seed), size, class);
+    let (mut out, arcs, pairs, _) = traffic(&mut Draw::new(seed), size, class);
     paths(&mut out, &names('n', size as usize), &arcs, &pairs);
+    out
+}
+
+/// The same with a capacity for each arc: of one of the ring what all pairs put on it that go round
+/// the ring, so that there is a plan; of others some two pairs.
+pub(super) fn capacitated(size: u32, class: Class, seed: u64) -> Blocks {
+    let mut draw = Draw::new(seed);
+    let (mut out, arcs, pairs, units) = traffic(&mut draw, size, class);
+    let (nodes, count) = (names('n', size as usize), size as usize);
+    let mut round = vec![0; count];
+    for (&(from, to), sent) in pairs.iter().zip(units) {
+        for step in 0..(to + count - from) % count {
+            round[(from + step) % count] += sent;
+        }
+    }
+    let mut most = Vec::new();
+    for &(i, j) in &arcs {
+        let drawn = 5 + draw.below(8);
+        let carries = if j == (i + 1) % count { round[i].max(1) } else { drawn };
+        most.push(format!("{} {} {carries}", nodes[i], nodes[j]));
+    }
+    out.by("u", "i, j", &most);
+    paths(&mut out, &nodes, &arcs, &pairs);
     out
 }
 
@@ -53,14 +76,14 @@ pub(super) fn lines(size: u32, class: Class, seed: u64) -> Blocks {
 
 type Ends = Vec<(usize, usize)>;
 
-/// The network and what it carries, with its arcs and pairs.
-fn traffic(draw: &mut Draw, size: u32, class: Class) -> (Blocks, Ends, Ends) {
+/// The network and what it carries, with its arcs, its pairs and what each sends.
+fn traffic(draw: &mut Draw, size: u32, class: Class) -> (Blocks, Ends, Ends, Vec<i64>) {
     let points = draw.points(size, class);
     let (count, others) = (points.len(), i64::from(size));
     let nodes = names('n', count);
     let (mut arcs, mut building, mut carrying) = (Vec::new(), Vec::new(), Vec::new());
     let (mut pairs, mut units) = (Vec::new(), Vec::new());
-    let (mut ways, mut ends) = (Ends::new(), Ends::new());
+    let (mut ways, mut ends, mut sent) = (Ends::new(), Ends::new(), Vec::new());
     for i in 0..count {
         for j in (0..count).filter(|&j| j != i) {
             let name = format!("{} {}", nodes[i], nodes[j]);
@@ -72,7 +95,8 @@ fn traffic(draw: &mut Draw, size: u32, class: Class) -> (Blocks, Ends, Ends) {
                 ways.push((i, j));
             }
             if j == (i + 2) % count || draw.below(2 * others) == 0 {
-                units.push(format!("{name} {}", 1 + draw.below(9)));
+                sent.push(1 + draw.below(9));
+                units.extend(sent.last().map(|last| format!("{name} {last}")));
                 pairs.push(name);
                 ends.push((i, j));
             }
@@ -85,7 +109,7 @@ fn traffic(draw: &mut Draw, size: u32, class: Class) -> (Blocks, Ends, Ends) {
     out.by("c", "i, j", &carrying);
     out.by("K", "s, t", &pairs);
     out.by("d", "s, t", &units);
-    (out, ways, ends)
+    (out, ways, ends, sent)
 }
 
 /// From each node an arc to the next, which is long and takes little, and some two more to

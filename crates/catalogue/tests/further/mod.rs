@@ -28,6 +28,7 @@ pub(crate) fn stated(id: &str, instance: &Instance) -> Option<Size> {
         "cases" => cases(rival, &data),
         "tardiness" => tardiness(rival, &data),
         "lines" => lines(rival, &data),
+        "capacitated-design" => capacitated(rival, &data),
         "unit" | "start-limits" => units(id, &data),
         "qap" => products(rival, data.count("V")),
         "rcpsp" => project(rival, &data),
@@ -54,6 +55,7 @@ fn quadratic(rival: &str, n: usize) -> Option<Size> {
         "products" => Some((n + pairs, 3 * pairs, 0)),
         "row-sums" => Some((2 * n, 2 * n, 0)),
         "triangles" => Some((n + pairs, 3 * pairs + 4 * triples, 0)),
+        "rlt-2" => Some((n + pairs + triples, 7 * triples, 0)),
         _ => None,
     }
 }
@@ -89,6 +91,26 @@ fn lines(rival: &str, data: &Data<'_>) -> Option<Size> {
         "split" => Some((m * (k + 1), n * k + m + m * k, 0)),
         "multiple-choice" => {
             Some((m * (k + 1) * (most + 1), n * k + m * k + 2 * m + m * most * (k + 2), 0))
+        }
+        _ => None,
+    }
+}
+
+fn capacitated(rival: &str, data: &Data<'_>) -> Option<Size> {
+    let [n, m, k] = ["V", "A", "K"].map(|name| data.count(name));
+    let sent = data.sums("d", 0);
+    match rival {
+        "joined" => Some((m * (k + 1), n * k + m, 0)),
+        "by-origin" => Some((m * (sent.len() + 1), sent.len() * (n + m) + m, 0)),
+        "split" => Some((m * (k + 1), n * k + m + m * k, 0)),
+        "paths" => Some((m + data.count("P"), k + m + m * k, 0)),
+        "node-cuts" => {
+            let ends = [0, 1].map(|end| {
+                let (sent, most) = (data.sums("d", end), data.most("u", end));
+                let large = sent.iter().filter(|&(node, sum)| *sum > most[node]).count();
+                sent.len() + large
+            });
+            Some((m * (k + 1), n * k + m + m * k + ends[0] + ends[1], 0))
         }
         _ => None,
     }

@@ -1,5 +1,7 @@
 //! What an instance holds, in counts and numbers: what the stated sizes of rivals are told in.
 
+use std::collections::BTreeMap;
+
 use instance::{Datum, Instance};
 use model::nearest_f64;
 
@@ -42,6 +44,32 @@ impl Data<'_> {
             }
             _ => Vec::new(),
         }
+    }
+
+    /// The sum of those that have the same label at a place.
+    pub(crate) fn sums(&self, name: &str, place: usize) -> BTreeMap<&str, usize> {
+        self.by(name, place, |sum, value| sum + value)
+    }
+
+    /// The largest of those.
+    pub(crate) fn most(&self, name: &str, place: usize) -> BTreeMap<&str, usize> {
+        self.by(name, place, usize::max)
+    }
+
+    fn by(
+        &self,
+        name: &str,
+        place: usize,
+        join: fn(usize, usize) -> usize,
+    ) -> BTreeMap<&str, usize> {
+        let mut out = BTreeMap::new();
+        if let Some(Datum::Table { cells, .. }) = self.0.get(name) {
+            for (key, value) in cells {
+                let held = out.entry(key[place].as_str()).or_default();
+                *held = join(*held, nearest_f64(value) as usize);
+            }
+        }
+        out
     }
 
     /// Their sum.

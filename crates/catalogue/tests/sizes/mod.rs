@@ -58,14 +58,16 @@ fn round_trips(id: &str, n: usize) -> Option<Size> {
     Some(match id {
         "atsp/tight-one-commodity" => (2 * drives, 2 * n + 3 * stops + 2 * inner, 0),
         "atsp/time-staged" => ((n + 1) * drives, 2 * n + drives + stops, 0),
+        "atsp/one-at-a-time" => ((n + 1) * drives, 3 * n + drives + stops, 0),
         "atsp/legs" => (drives + (n - 2) * inner + stops * stops, 2 * n + 3 * stops + 3 * inner, 0),
-        "atsp/loose-labels" => (drives + stops, 2 * n + inner, 0),
+        "atsp/loose-labels" | "atsp/lifted-rows" => (drives + stops, 2 * n + inner, 0),
         "atsp/precedence-labels" | "atsp/lifted-precedence-labels" => {
             (drives + inner, 2 * n + 2 * inner + triples, 0)
         }
         "atsp/precedence" => (drives + inner, 2 * n + 3 * inner / 2 + triples, 0),
         "atsp/rlt-labels" => (2 * drives + n, 2 * n + 5 * n - 4 + 4 * inner, 0),
         "tsp/degrees" => (drives / 2, n, 0),
+        "tsp/multi-commodity" => (drives / 2 + drives * stops, n + drives + drives * stops / 2, 0),
         "tsp/two-commodity" => (3 * drives / 2, 2 * n - 1 + drives / 2, 0),
         _ => return None,
     })
@@ -155,6 +157,7 @@ fn trees(id: &str, instance: &Instance) -> Option<Size> {
         "tree/multi-commodity" => (m + 2 * m * n, 1 + m + (n - 1) * (n + 2 * m), 0),
         "tree/arborescences" => (m + 2 * m * n, 1 + n * m + n * (n - 1), 0),
         "tree/undirected-flow" => (m + 2 * m * (n - 1), 1 + (n + m) * (n - 1), 0),
+        "tree/directed-flow" => (5 * m, 3 * m + 2 * n - 1, 0),
         "tree/labels" => (3 * m + n, 3 * m + n, 0),
         _ => return steiner(id, instance, n, m),
     })
@@ -168,6 +171,7 @@ fn steiner(id: &str, instance: &Instance, n: usize, m: usize) -> Option<Size> {
         "steiner/undirected-flow" => (m + 2 * m * (k - 1), (n + m) * (k - 1), 0),
         "steiner/directed-cuts" => (3 * m, m, 1),
         "steiner/multi-commodity" => (3 * m + 2 * m * (k - 1), m + (n + 2 * m) * (k - 1), 0),
+        "steiner/directed-flow" => (5 * m, 3 * m + n + k - 1, 0),
         "steiner/nodes" => (m + n, 1, n),
         "steiner/balanced-cuts" => (3 * m, m + n - k, 1),
         _ => return None,
@@ -183,8 +187,11 @@ fn graphs(id: &str, instance: &Instance) -> Option<Size> {
         "stable-set/edges" => (n, m, 0),
         "stable-set/cliques" => (n, m, 1),
         "max-cut/sides" => (m + n, 2 * m, 0),
+        "max-cut/odd-cycles" => (m + 2 * n * n, 8 * n * m, 0),
         "max-cut/triangles" => (n * (n - 1) / 2, 2 * n * (n - 1) * (n - 2) / 3, 0),
         "stable-set/odd-cycles" => (n, m + short_cycles(instance), 0),
+        "stable-set/wheels" => (n, m + short_cycles(instance) + wheels(instance), 0),
+        "stable-set/every-odd-cycle" => (n + 2 * n * n, m + 4 * n * m, 0),
         "colouring/stable-sets" => (count(instance, "P"), n, 0),
         "colouring/representatives" => representatives(instance),
         _ => {
@@ -203,14 +210,37 @@ fn graphs(id: &str, instance: &Instance) -> Option<Size> {
     })
 }
 
+/// The ends of each edge, both ways.
+fn joined(instance: &Instance) -> BTreeSet<(&String, &String)> {
+    let Some(Datum::Tuples { rows, .. }) = instance.get("E") else { panic!("no edges") };
+    rows.iter().flat_map(|edge| [(&edge[0], &edge[1]), (&edge[1], &edge[0])]).collect()
+}
+
+/// Fours that are all joined, and pentagons with a node that is joined to all five.
+fn wheels(instance: &Instance) -> usize {
+    let joined = joined(instance);
+    let nodes: BTreeSet<&String> = joined.iter().map(|&(i, _)| i).collect();
+    let mut found = [0; 2];
+    let mut walks: Vec<Vec<&String>> = joined.iter().map(|&(i, j)| vec![i, j]).collect();
+    for length in 3..=5 {
+        walks = walks.iter().flat_map(|walk| longer(walk, &joined)).collect();
+        for walk in walks.iter().filter(|walk| joined.contains(&(walk[length - 1], walk[0]))) {
+            let hub = |h: &&&String| walk.iter().all(|&i| joined.contains(&(i, **h)));
+            found[length / 5] += if length == 4 { 0 } else { nodes.iter().filter(hub).count() };
+        }
+    }
+    found[0] / 24 + found[1] / 10
+}
+
+/// Three items, and three others in some order.
+fn fences(n: usize) -> usize {
+    (0..6).map(|k| n.saturating_sub(k)).product::<usize>() / 6
+}
+
 /// Triangles and pentagons, with chords or without: orders of three or five nodes that are joined
 /// each to the next, counted once.
 fn short_cycles(instance: &Instance) -> usize {
-    let Some(Datum::Tuples { rows, .. }) = instance.get("E") else { panic!("no edges") };
-    let mut joined: BTreeSet<(&String, &String)> = BTreeSet::new();
-    for edge in rows {
-        joined.extend([(&edge[0], &edge[1]), (&edge[1], &edge[0])]);
-    }
+    let joined = joined(instance);
     let mut walks: Vec<Vec<&String>> = joined.iter().map(|&(i, j)| vec![i, j]).collect();
     let mut closed = 0;
     for length in 3..=5 {
@@ -247,6 +277,8 @@ fn items(id: &str, n: usize) -> Option<Size> {
     Some(match id {
         "ordering/labels" => (n * n, 3 * pairs, 0),
         "ordering/dicycles" => (2 * pairs, pairs + 2 * triples, 0),
+        "ordering/fences" => (2 * pairs, pairs + 2 * triples + fences(n), 0),
+        "grouping/two-partitions" => (pairs, 3 * triples + triples * n.saturating_sub(3), 0),
         "grouping/triangles" => (pairs, 3 * triples, 0),
         "grouping/assignment" => (pairs + n * n, n + 3 * n * pairs, 0),
         "grouping/representatives" => (n * n, n + pairs + 2 * (n + 1) * n * (n - 1) / 3, 0),

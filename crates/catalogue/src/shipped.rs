@@ -64,7 +64,7 @@ pub(crate) const FAMILIES: &[Family] = &[
     ),
     family!(
         "colouring": "assignment", "ordered", "cliques", "representatives", "partial-order",
-        "stable-sets"
+        "tight-partial-order", "stable-sets"
     ),
     family!("ordering": "labels", "dicycles", "fences"),
     family!("max-cut": "sides", "odd-cycles", "triangles"),

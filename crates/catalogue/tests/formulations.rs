@@ -112,7 +112,7 @@ fn on_instances(mut check: impl FnMut(&Entry, Class, &Instance)) {
 /// What the data may bring about: no row for what small or complete data lack (a drive without a
 /// drive back, a load too large for one vehicle, two in conflict that a third could represent), and
 /// two radii between which a client has no site.
-const BY_THE_DATA: [(&str, &str); 16] = [
+const BY_THE_DATA: [(&str, &str); 17] = [
     ("row.empty-family", "atsp/lifted-labels"),
     ("row.empty-family", "atsp/lifted-rows"),
     ("row.empty-family", "atsp/rlt-labels"),
@@ -122,6 +122,7 @@ const BY_THE_DATA: [(&str, &str); 16] = [
     ("row.empty-family", "ordering/fences"),
     ("row.empty-family", "capacitated-design/node-cuts"),
     ("row.empty-family", "colouring/partial-order"),
+    ("row.empty-family", "colouring/tight-partial-order"),
     ("row.empty-family", "cvrp/lifted-load-labels"),
     ("row.empty-family", "colouring/representatives"),
     ("row.empty-family", "p-median/chained-radius"),

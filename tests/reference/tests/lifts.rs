@@ -19,7 +19,7 @@ use tree::{Settings, Status};
 /// Rivals that do not have the natural variable of their family, and the one that they share with
 /// the others in its place; none where all that they share is what the objective counts: bins,
 /// colours, the end of all jobs, and the length of a path from its dual.
-const INSTEAD: [(&str, &str); 17] = [
+const INSTEAD: [(&str, &str); 18] = [
     ("ufl/radii", "y"),
     ("bins/arc-flow", ""),
     ("bins/patterns", ""),
@@ -30,6 +30,7 @@ const INSTEAD: [(&str, &str); 17] = [
     ("colouring/cliques", ""),
     ("colouring/representatives", ""),
     ("colouring/partial-order", ""),
+    ("colouring/tight-partial-order", ""),
     ("colouring/stable-sets", ""),
     ("job-shop/time-indexed", ""),
     ("job-shop/time-indexed-split", ""),

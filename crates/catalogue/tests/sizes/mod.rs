@@ -200,7 +200,7 @@ fn graphs(id: &str, instance: &Instance) -> Option<Size> {
             match id {
                 "colouring/assignment" => (h * (n + 1), rows, 0),
                 "colouring/ordered" => (h * (n + 1), rows + 2 * h - 1, 0),
-                "colouring/partial-order" => {
+                "colouring/partial-order" | "colouring/tight-partial-order" => {
                     (n * (h + 1), n * (h - 2) + m * h + (n - 1) * (h - 1), 0)
                 }
                 "colouring/cliques" => (h * (n + 1), rows, h),

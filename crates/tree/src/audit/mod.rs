@@ -11,6 +11,7 @@
 //! without derivations, the audit branches on within the leaf. A log is refused with the node at which it is
 //! wrong; a leaf that the limits leave unproved is named as open.
 
+mod closure;
 mod derived;
 mod leaf;
 mod shape;
@@ -368,7 +369,10 @@ impl Audit {
     fn begin_tightened(&mut self, node: usize, place: usize) {
         let id = number(node);
         let (path, bound) = self.testimony.removed(id, place);
-        if !is_whole(bound.bound) {
+        let column = self.model.columns().get(bound.column.index());
+        if !column.is_some_and(|column| column.integer) {
+            self.fault(id, "tightens a bound of what need not be whole");
+        } else if !is_whole(bound.bound) {
             self.fault(id, "tightens a bound to what is not whole");
         } else if self.tools.duals_close(&self.model, &path) {
             self.result.tightened += 1;
@@ -382,16 +386,20 @@ impl Audit {
     /// Begins to prove a leaf; goes past a node that was branched on.
     fn begin_leaf(&mut self, node: usize, place: usize) {
         let (id, claim) = (number(node), &self.testimony.claims[node]);
-        let said = claim.bound.filter(|_| self.testimony.own_bounds);
-        let said = said.map(|bound| self.internal(bound));
+        let bound = claim.bound.map(|bound| self.internal(bound));
+        if let Some(why) = closure::contradiction(claim, &self.tools, bound) {
+            self.stage = Stage::Node(node, place + 1);
+            return self.fault(id, why);
+        }
+        let said = bound.filter(|_| self.testimony.own_bounds);
         let (goal, said) = match claim.state {
             _ if claim.children > 0 => {
                 self.stage = Stage::Node(node, place + 1);
                 return;
             }
             NodeState::Infeasible => (Goal::Empty, None),
-            NodeState::Pruned | NodeState::Integer => (Goal::Close, said),
-            NodeState::Closed | NodeState::Unsolved => (Goal::Close, None),
+            NodeState::Pruned | NodeState::Integer | NodeState::Closed => (Goal::Close, said),
+            NodeState::Unsolved => (Goal::Close, None),
             NodeState::Open | NodeState::Branched | NodeState::Unbounded => {
                 self.result.open.push(id);
                 self.stage = Stage::Node(node, place + 1);
@@ -436,7 +444,7 @@ impl Audit {
         self.stage = Stage::Done;
         let best = self.tools.target.best();
         if let (Some(said), Some(best)) = (self.testimony.bound, best)
-            && self.internal(said) > best + ROUNDED * one_or_size(best)
+            && (said.is_nan() || self.internal(said) > best + ROUNDED * one_or_size(best))
         {
             self.fault(NodeId::ROOT, format!("the bound of the whole tree, {said}, is not proved"));
         }
@@ -460,7 +468,7 @@ impl Tools {
 
 impl LoggedRow {
     /// The row; `None` where the model has no such row.
-    fn addition(&self, model: &Model) -> Option<Addition> {
+    pub(crate) fn addition(&self, model: &Model) -> Option<Addition> {
         match self {
             Self::Written(row) => {
                 let there =

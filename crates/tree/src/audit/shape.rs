@@ -4,7 +4,7 @@ use model::Model;
 
 use super::testimony::Claim;
 use super::{Fault, is_whole, number};
-use crate::event::{NodeId, NodeState, Side};
+use crate::event::{Branch, NodeId, NodeState, Side};
 
 /// What is wrong with the shape of a tree. `O(nodes)`.
 pub(super) fn faults(model: &Model, claims: &[Claim]) -> Vec<Fault> {
@@ -46,14 +46,19 @@ fn ends(state: NodeState) -> bool {
 /// What two nodes of one branching leave out.
 fn split(model: &Model, claims: &[Claim], one: NodeId, other: NodeId) -> Option<String> {
     let of = |node: NodeId| claims[node.0 as usize - 1].branching;
-    let (a, b) = (of(one)?, of(other)?);
-    let (down, up) = if a.side == Side::AtMost { (a, b) } else { (b, a) };
-    let whole = model.columns().get(a.column.index()).is_some_and(|column| column.integer);
-    let covers = a.column == b.column
-        && (down.side, up.side) == (Side::AtMost, Side::AtLeast)
-        && is_whole(down.bound)
-        && up.bound == down.bound + 1.0;
-    (!covers || !whole).then(|| {
+    let covers = of(one).zip(of(other)).is_some_and(|(a, b)| covers(model, a, b));
+    (!covers).then(|| {
         format!("is branched on so that nodes {} and {} leave something out", one.0, other.0)
     })
+}
+
+/// Whether two branchings take every value of a whole column.
+fn covers(model: &Model, a: Branch, b: Branch) -> bool {
+    let (down, up) = if a.side == Side::AtMost { (a, b) } else { (b, a) };
+    let whole = model.columns().get(a.column.index()).is_some_and(|column| column.integer);
+    whole
+        && a.column == b.column
+        && (down.side, up.side) == (Side::AtMost, Side::AtLeast)
+        && is_whole(down.bound)
+        && up.bound == down.bound + 1.0
 }

@@ -22,6 +22,8 @@ pub struct Claim {
     pub state: NodeState,
     /// The bound of its relaxation, in the direction of the objective, where it was solved.
     pub bound: Option<f64>,
+    /// Whether its own relaxation closed it, and not an incumbent or a person later.
+    pub solved: bool,
     /// How many nodes were made of it.
     pub children: u32,
     /// Bounds that were tightened before it was solved.
@@ -111,6 +113,7 @@ impl Testimony {
             branching,
             state: NodeState::Open,
             bound: None,
+            solved: false,
             children: 0,
             before: Vec::new(),
             after: Vec::new(),
@@ -120,8 +123,14 @@ impl Testimony {
     fn ended(&mut self, node: NodeId, state: NodeState, bound: Option<f64>) {
         let place = (node.0 as usize).wrapping_sub(1);
         match self.claims.get_mut(place) {
+            Some(claim) if !matches!(claim.state, NodeState::Open | NodeState::Branched) => {
+                self.fault(node, "ends twice");
+            }
             Some(claim) => {
                 claim.state = state;
+                // cuts and heuristics close the root when it is solved
+                let own = node != NodeId::ROOT || state == NodeState::Integer;
+                claim.solved = own && bound.is_some();
                 claim.bound = bound.or(claim.bound);
             }
             None => self.fault(node, "ends before it is made"),
@@ -143,7 +152,7 @@ impl Testimony {
     }
 
     /// The bounds of a node in the order in which they were set. `O(depth + tightened)`.
-    pub(super) fn path(&self, node: NodeId) -> Vec<Branch> {
+    pub(crate) fn path(&self, node: NodeId) -> Vec<Branch> {
         let mut path = self.above(node);
         path.extend(&self.claim(node).before);
         path

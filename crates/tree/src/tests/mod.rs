@@ -19,4 +19,5 @@ mod node_work;
 mod rules;
 mod slices;
 pub(crate) mod support;
+mod tampered;
 mod trips;

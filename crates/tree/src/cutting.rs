@@ -24,8 +24,8 @@ use crate::target::{float_below, signed};
 const MOST_ROUNDS: u32 = 30;
 /// Cuts that a round adds at most.
 const MOST_CUTS: usize = 40;
-/// Cuts below the root at most: their rows stay.
-const MOST_BELOW: u32 = 2_000;
+/// Cuts below the root, of which the rows stay: as many as half of the model's rows, within these limits.
+const BELOW: (usize, usize) = (50, 2_000);
 /// A rise of the bound that is less than this share of it does not count.
 const RISE: f64 = 1e-5;
 /// Rounds in a row without a rise that end the cuts.
@@ -68,6 +68,8 @@ pub(crate) struct Cutting {
     sources: Sources,
     result: CutsResult,
     done: bool,
+    /// Whether those of the root raised its bound: where they do not, those below are only rows.
+    helps: bool,
     stalled: u32,
     last: f64,
     basis: Option<Basis>,
@@ -86,6 +88,7 @@ impl Cutting {
             sources: Sources::default(),
             result: CutsResult::default(),
             done: false,
+            helps: false,
             stalled: 0,
             last: f64::NEG_INFINITY,
             basis: None,
@@ -118,6 +121,7 @@ impl Cutting {
     /// Notes the bound of a round; whether it has stalled.
     fn stalls(&mut self, bound: f64) -> bool {
         if bound > self.last + RISE * (1.0 + bound.abs()) {
+            self.helps = self.result.rounds > 0 || self.helps;
             self.last = bound;
             self.stalled = 0;
         } else {
@@ -214,8 +218,9 @@ impl Search {
         let cuts = self.settings.cuts;
         let depth = self.tree.node(hand.node).depth;
         let due = depth.checked_rem(cuts.every) == Some(0) && hand.node != NodeId::ROOT;
-        let room = hand.cut_rounds < cuts.rounds && cutting.result.below < MOST_BELOW;
-        cutting.done && due && room
+        let most = (self.model.row_count() / 2).clamp(BELOW.0, BELOW.1);
+        let room = hand.cut_rounds < cuts.rounds && (cutting.result.below as usize) < most;
+        cutting.done && due && room && cutting.helps
     }
 
     /// The relaxation of the root with the cuts so far is solved: looks for more, or ends.

@@ -14,14 +14,15 @@ use model::{ColumnId, Number, Row, nearest_f64};
 use super::aggregate::{Aggregate, Frame};
 use super::derivation::Derivation;
 use super::shorten::shortened;
+use super::sketch::{FRACTIONS, Sketch};
 use super::{Class, GeneralCut};
 
-/// The least and the largest fraction of the right side that is rounded.
-const FRACTIONS: (f64, f64) = (0.02, 0.98);
 /// Divisors that are tried for one sum.
 const MOST_DIVISORS: usize = 6;
 /// The least efficacy of a cut.
 pub(super) const LEAST: f64 = 1e-4;
+/// The same in floating-point numbers, before the cut is derived.
+const NEARLY: f64 = 0.9 * LEAST;
 
 /// The cut of a sum that is divided by `divisor`, with each column moved to its nearer bound but
 /// those in `flips`; if `x` violates it.
@@ -96,6 +97,11 @@ pub(super) fn plain(
     x: &[f64],
     flips: &BTreeSet<ColumnId>,
 ) -> Option<GeneralCut> {
+    let mut sketch = Sketch::new(sum, frame, x)?;
+    let flipped = sketch.flips(|column| flips.contains(&column));
+    if sketch.efficacy(1.0, &flipped) < NEARLY {
+        return None;
+    }
     let way = (&Number::ONE, flips);
     let row = rounded(sum, frame, x, way)?;
     finished((class, &row), sum, frame, x, way)
@@ -124,41 +130,17 @@ pub(super) fn at_upper(frame: &Frame, column: ColumnId, x: &[f64]) -> Option<boo
 
 /// The best cut of a sum, over divisors and complements (Marchand, Wolsey 2001): whole columns
 /// between their bounds give the divisors, the best of these is halved up to three times, and then
-/// such columns are moved to their other bound while that makes the cut better.
+/// such columns are moved to their other bound while that makes the cut better. They are compared in
+/// floating-point numbers; the best is derived.
 #[must_use]
 pub fn complemented(class: Class, sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<GeneralCut> {
-    let between = |column: &ColumnId| {
-        let (lower, upper) = &frame.bounds[column.index()];
-        let value = x[column.index()];
-        let inside = |bound: &Option<Number>, sign: f64| {
-            bound.as_ref().is_none_or(|b| sign * (value - nearest_f64(b)) > 1e-6)
-        };
-        frame.integer[column.index()] && inside(lower, 1.0) && inside(upper, -1.0)
-    };
-    let inner: Vec<ColumnId> = sum.coefficients.keys().copied().filter(between).collect();
+    let mut sketch = Sketch::new(sum, frame, x)?;
+    let way = Way::best(&mut sketch)?;
     let size = |a: &Number| if *a < Number::ZERO { -a.clone() } else { a.clone() };
-    let mut divisors: BTreeSet<Number> =
-        inner.iter().filter_map(|c| sum.coefficients.get(c)).map(size).collect();
-    divisors.insert(Number::ONE);
-    let mut best = Best { sum, frame, x, found: None };
-    let none = BTreeSet::new();
-    for divisor in divisors.into_iter().rev().take(MOST_DIVISORS) {
-        best.attempt(divisor, &none);
-    }
-    let (_, mut divisor, _) = best.found.clone()?;
-    for _ in 0..3 {
-        divisor /= Number::from(2);
-        best.attempt(divisor.clone(), &none);
-    }
-    let divisor = best.found.as_ref()?.1.clone();
-    let mut flips = BTreeSet::new();
-    for &column in &inner {
-        flips.insert(column);
-        if !best.attempt(divisor.clone(), &flips) {
-            flips.remove(&column);
-        }
-    }
-    let (_, _, row) = best.found?;
+    let divisor = way.of.and_then(|column| sum.coefficient(column)).map(size);
+    let divisor = divisor.unwrap_or(Number::ONE) / Number::from(1_u32 << way.halved);
+    let flips: BTreeSet<ColumnId> = sketch.flipped(&way.flips).collect();
+    let row = rounded(sum, frame, x, (&divisor, &flips))?;
     finished((class, &row), sum, frame, x, (&divisor, &flips))
 }
 
@@ -174,27 +156,52 @@ pub fn from_tableau(sum: &Aggregate, frame: &Frame, x: &[f64]) -> Option<General
     }
 }
 
-/// The best cut so far: its efficacy, its divisor and its row.
-struct Best<'a> {
-    sum: &'a Aggregate,
-    frame: &'a Frame,
-    x: &'a [f64],
-    found: Option<(f64, Number, Row)>,
+/// How a sum is rounded: what that is worth, what divides it, of which column that is the coefficient
+/// (`None`: 1), how often it is halved, and which entries are moved to their farther bound.
+#[derive(Debug, Clone)]
+struct Way {
+    efficacy: f64,
+    divisor: f64,
+    of: Option<ColumnId>,
+    halved: u32,
+    flips: Vec<bool>,
 }
 
-impl Best<'_> {
-    /// Tries a divisor and complements; whether that is better.
-    fn attempt(&mut self, divisor: Number, flips: &BTreeSet<ColumnId>) -> bool {
-        let Some(row) = rounded(self.sum, self.frame, self.x, (&divisor, flips)) else {
-            return false;
-        };
-        let efficacy = efficacy(&row, self.x);
-        let better = self.found.as_ref().is_none_or(|(most, ..)| efficacy > *most + 1e-9);
-        if better && efficacy > LEAST {
-            self.found = Some((efficacy, divisor, row));
-            return true;
+impl Way {
+    /// The best for a sum.
+    fn best(sketch: &mut Sketch) -> Option<Self> {
+        let inner: Vec<(usize, ColumnId, f64)> = sketch.inner().collect();
+        let sizes = inner.iter().map(|&(_, column, a)| (a.abs(), Some(column)));
+        let mut divisors: Vec<(f64, Option<ColumnId>)> = sizes.chain([(1.0, None)]).collect();
+        divisors.sort_by(|a, b| b.0.total_cmp(&a.0));
+        divisors.dedup_by(|a, b| a.0 == b.0);
+        divisors.truncate(MOST_DIVISORS);
+        let none = sketch.flips(|_| false);
+        let mut best = Self { efficacy: NEARLY, divisor: 0.0, of: None, halved: 0, flips: none };
+        for (divisor, of) in divisors {
+            best.improve(sketch, &Self { divisor, of, ..best.clone() });
         }
-        false
+        if best.divisor == 0.0 {
+            return None;
+        }
+        let first = best.divisor;
+        for (halved, part) in [(1, 0.5), (2, 0.25), (3, 0.125)] {
+            best.improve(sketch, &Self { divisor: first * part, halved, ..best.clone() });
+        }
+        for (place, ..) in inner {
+            let mut other = best.clone();
+            other.flips[place] = true;
+            best.improve(sketch, &other);
+        }
+        Some(best)
+    }
+
+    /// Takes another way where that is better.
+    fn improve(&mut self, sketch: &mut Sketch, other: &Self) {
+        let efficacy = sketch.efficacy(other.divisor, &other.flips);
+        if efficacy > self.efficacy + 1e-9 {
+            *self = Self { efficacy, ..other.clone() };
+        }
     }
 }
 

@@ -31,6 +31,7 @@ mod mir;
 mod odd_cuts;
 mod round;
 mod shorten;
+mod sketch;
 #[cfg(test)]
 mod tests;
 mod trips;

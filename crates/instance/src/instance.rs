@@ -24,7 +24,7 @@ pub enum Reader {
     Blocks,
     /// A knapsack of one row.
     Knapsack,
-    /// A knapsack of several rows: OR-Library mknap.
+    /// A knapsack with several rows: OR-Library mknap.
     MultiKnapsack,
     /// Generalised assignment: OR-Library gap.
     Assignment,
@@ -56,7 +56,7 @@ const READERS: [(Reader, &str, &str); 18] = [
     (Reader::Tsplib, "tsplib", "a TSPLIB file"),
     (Reader::Blocks, "blocks", "named blocks"),
     (Reader::Knapsack, "knapsack", "a knapsack"),
-    (Reader::MultiKnapsack, "multi-knapsack", "a knapsack of several rows"),
+    (Reader::MultiKnapsack, "multi-knapsack", "a knapsack with several rows"),
     (Reader::Assignment, "assignment", "generalised assignment"),
     (Reader::Sites, "sites", "sites with capacities and clients"),
     (Reader::Medians, "medians", "medians of a graph"),

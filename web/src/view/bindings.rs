@@ -1,5 +1,5 @@
 //! Which datum of the instance each name of the rivals takes, where the names differ; and whose rivals
-//! would find their data, where none of these does.
+//! would find their data, where none of these does or all of it is assumed.
 
 use record::message::{BindJob, Binding, BindingOffer, FoundBy};
 use web_sys::HtmlSelectElement;
@@ -61,7 +61,7 @@ pub(crate) fn Bindings(props: &InstanceProps) -> Html {
     }
 }
 
-/// Families whose data the instance holds, where no rival finds all of its own: one click takes their
+/// Families whose data the instance holds, where no rival finds all of its own, or only by assumption: one click takes their
 /// rivals in place of these.
 fn suits(document: &Document, hands: Option<&Hands>) -> Html {
     if document.suits.is_empty() {
@@ -76,9 +76,14 @@ fn suits(document: &Document, hands: Option<&Hands>) -> Html {
             }
         })
     };
+    let told = if document.bindings.iter().all(|line| line.problem.is_empty()) {
+        "The rivals take all of their data by assumption and leave tables unused. Rivals of a family that may suit better:"
+    } else {
+        "No rival finds all of its data here. Take rivals of a family that does, or nearly:"
+    };
     html! {
         <div class="suits" role="group" aria-label="Rivals that suit the instance" data-testid="suits">
-            <p class="small">{ "No rival finds all of its data here. Take rivals of a family that does, or nearly:" }</p>
+            <p class="small">{ told }</p>
             <ul class="acts">
                 for suit in document.suits.iter().take(SUITS) {
                     <li key={suit.family.clone()}>

@@ -7,9 +7,7 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
-use common::{exact_row_text, kitchen, made, rows_of};
+use crate::common::{exact_row_text, kitchen, made, rows_of};
 use model::{Model, SubsetCondition, nearest_f64};
 
 /// A text around some lines: data `V, A, c, r, T, K, Q, d, q, E` and a trivial objective.

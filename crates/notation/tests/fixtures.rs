@@ -9,11 +9,9 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
 use std::collections::BTreeMap;
 
-use common::kitchen;
+use crate::common::kitchen;
 use hullward_notation::{Diagnostic, check, line_column, model, parse, print};
 
 /// The fixtures of a folder by name.

@@ -9,12 +9,10 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
 use std::collections::{BTreeMap, BTreeSet};
 
+use crate::common::{kitchen, shown};
 use ::model::FamilyState;
-use common::{kitchen, shown};
 use hullward_notation::{
     Diagnostic, Expansion, Limits, Severity, assumed, bind, check, codes, help, line_column, model,
     parse, utf16_range,

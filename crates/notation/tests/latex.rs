@@ -8,9 +8,7 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
-use common::shown;
+use crate::common::shown;
 use hullward_notation::{latex, parse, print};
 use proptest::prelude::*;
 use std::path::Path;

@@ -8,11 +8,9 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
 use std::collections::{BTreeMap, BTreeSet};
 
-use common::{errors, exact_row_text, made, made_with, rows_of, stops};
+use crate::common::{errors, exact_row_text, made, made_with, rows_of, stops};
 use model::{FamilyState, Model, Row, RowId, Scope, SubsetCondition, nearest_f64};
 
 fn shipped(name: &str) -> String {

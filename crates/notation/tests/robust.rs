@@ -8,9 +8,7 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
-use common::{kitchen, run_time, shown};
+use crate::common::{kitchen, run_time, shown};
 use hullward_notation::mathml::Element;
 use hullward_notation::{Diagnostic, check, model, parse, print, typeset};
 use proptest::prelude::*;

@@ -8,9 +8,7 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
-use common::kitchen;
+use crate::common::kitchen;
 use hullward_notation::{Diagnostic, Expansion, Limits, bind, check, parse};
 use instance::Instance;
 use model::Model;

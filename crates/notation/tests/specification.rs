@@ -8,11 +8,9 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
 use std::collections::BTreeMap;
 
-use common::{kitchen, rows_of, shown};
+use crate::common::{kitchen, rows_of, shown};
 use hullward_notation::{check, parse};
 
 /// What a text must come to.

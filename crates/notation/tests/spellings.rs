@@ -8,9 +8,7 @@
 )]
 
 #[allow(dead_code, unreachable_pub, reason = "each test file uses its own part")]
-mod common;
-
-use common::{made, stops};
+use crate::common::{made, stops};
 use hullward_notation::{parse, syntax::Formulation};
 
 const UNICODE: &str = "

@@ -83,11 +83,23 @@ fn firefox(place: &Workplace, all: bool) -> Result<(), Fault> {
 fn reference(place: &Workplace) -> Result<(), Fault> {
     step("reference checks", || {
         packages::ensure(&["cmake", "libclang-dev"], "to build HiGHS for the reference checks")?;
-        let both = ["--package", REFERENCE, "--package", BENCH];
-        run(cargo(place).arg("clippy").args(both).args(LINT))?;
-        run(cargo(place).arg("test").args(both))
+        run(cargo(place).arg("clippy").args(CHECKS).args(LINT))?;
+        run(cargo(place).arg("test").args(CHECKS))
     })
 }
+
+/// The checks, and with them what makes cargo choose the same features of the libraries as for the
+/// native tests, so that nothing is built a second time.
+const CHECKS: [&str; 8] = [
+    "--package",
+    REFERENCE,
+    "--package",
+    BENCH,
+    "--package",
+    "hullward-web",
+    "--package",
+    "hullward-xtask",
+];
 
 /// The driver's version.
 const GECKODRIVER: &str = "0.37.1";

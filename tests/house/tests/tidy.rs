@@ -57,3 +57,23 @@ fn nothing_is_left_unfinished() {
         }
     }
 }
+
+/// Where one program holds the tests of a folder, a file that its `main.rs` does not name would never
+/// be run.
+#[test]
+fn no_file_of_tests_is_forgotten() {
+    let sources = sources();
+    let programs = sources.iter().filter(|path| path.ends_with("tests/main.rs"));
+    let mut seen = 0;
+    for program in programs {
+        let text = fs::read_to_string(program).unwrap();
+        let beside = sources.iter().filter(|path| path.parent() == program.parent());
+        for file in beside.filter(|path| *path != program) {
+            let name = file.file_stem().unwrap().to_string_lossy();
+            let named = text.lines().any(|line| line == format!("mod {name};"));
+            assert!(named, "{} does not name {name}", program.display());
+            seen += 1;
+        }
+    }
+    assert!(seen > 30, "the programs of tests were not found");
+}

@@ -1,4 +1,5 @@
-//! One study at a time, in a worker of its own, over one instance after another.
+//! One study at a time, in a worker of its own, over one instance after another; what is asked
+//! meanwhile waits its turn.
 
 use std::cell::RefCell;
 use std::collections::VecDeque;
@@ -23,29 +24,55 @@ struct Inner {
     /// The instance at hand and those to come, each with its name.
     waiting: VecDeque<(usize, String)>,
     parts: Vec<Part>,
+    /// Studies to come.
+    queue: VecDeque<Asked>,
+}
+
+/// A study that is asked for.
+#[derive(Debug)]
+pub(crate) struct Asked {
+    /// Its kind.
+    pub(crate) kind: &'static str,
+    /// The text of the scenario that holds it.
+    pub(crate) scenario: String,
+    /// Its instances by place, each with its name.
+    pub(crate) instances: Vec<(usize, String)>,
 }
 
 impl Studying {
     /// Nothing is being done; the shelf hears of what is found.
     pub(crate) fn new(shelf: UseReducerDispatcher<Shelf>) -> Self {
-        let (waiting, parts) = (VecDeque::new(), Vec::new());
-        Self(Rc::new(RefCell::new(Inner { shelf, worker: None, of: "".into(), waiting, parts })))
+        Self(Rc::new(RefCell::new(Inner {
+            shelf,
+            worker: None,
+            of: "".into(),
+            waiting: VecDeque::new(),
+            parts: Vec::new(),
+            queue: VecDeque::new(),
+        })))
     }
 
-    /// Makes the study that a scenario's text holds on instances by place, each with its name; one that
-    /// runs is given up.
-    pub(crate) fn begin(
-        &self,
-        kind: &'static str,
-        scenario: String,
-        instances: Vec<(usize, String)>,
-    ) {
-        self.stop();
-        self.tell(ShelfAction::Begun(kind));
+    /// Makes a study, now or when those asked before it are at their end.
+    pub(crate) fn ask(&self, asked: Asked) {
+        if self.0.borrow().worker.is_none() {
+            return self.begin(asked);
+        }
+        self.tell(ShelfAction::Asked(asked.kind));
+        self.0.borrow_mut().queue.push_back(asked);
+    }
+
+    /// A study that waits is not made.
+    pub(crate) fn withdraw(&self, kind: &'static str) {
+        self.0.borrow_mut().queue.retain(|asked| asked.kind != kind);
+        self.tell(ShelfAction::Withdrawn(kind));
+    }
+
+    fn begin(&self, asked: Asked) {
+        self.tell(ShelfAction::Begun(asked.kind));
         {
             let mut inner = self.0.borrow_mut();
-            inner.of = scenario.into();
-            inner.waiting = instances.into();
+            inner.of = asked.scenario.into();
+            inner.waiting = asked.instances.into();
             inner.parts.clear();
         }
         self.next();
@@ -56,10 +83,18 @@ impl Studying {
         if self.0.borrow_mut().worker.take().is_none() {
             return;
         }
-        if self.0.borrow().parts.is_empty() {
-            self.tell(ShelfAction::Stopped);
-        } else {
-            self.hand_over();
+        if !self.0.borrow().parts.is_empty() {
+            return self.hand_over();
+        }
+        self.tell(ShelfAction::Stopped);
+        self.turn();
+    }
+
+    /// The study that has waited longest.
+    fn turn(&self) {
+        let asked = self.0.borrow_mut().queue.pop_front();
+        if let Some(asked) = asked {
+            self.begin(asked);
         }
     }
 
@@ -137,6 +172,7 @@ impl Studying {
             Found { of: Rc::clone(&inner.of), parts, left }
         };
         self.tell(ShelfAction::Ended(found));
+        self.turn();
     }
 
     fn tell(&self, action: ShelfAction) {

@@ -141,11 +141,17 @@ pub(crate) struct Shelf {
     pub(crate) found: BTreeMap<&'static str, Rc<Found>>,
     /// The kind that is being made, and what it does now.
     pub(crate) running: Option<(&'static str, String)>,
+    /// The kinds that were asked meanwhile, in that order.
+    pub(crate) waiting: Vec<&'static str>,
 }
 
 /// What happens to the shelf.
 #[derive(Debug)]
 pub(crate) enum ShelfAction {
+    /// A study is asked for while another runs.
+    Asked(&'static str),
+    /// It is not asked for any more.
+    Withdrawn(&'static str),
     /// A study begins.
     Begun(&'static str),
     /// It says what it does.
@@ -162,7 +168,12 @@ impl Reducible for Shelf {
     fn reduce(self: Rc<Self>, action: ShelfAction) -> Rc<Self> {
         let mut shelf = (*self).clone();
         match action {
-            ShelfAction::Begun(kind) => shelf.running = Some((kind, "beginning".to_owned())),
+            ShelfAction::Asked(kind) => shelf.waiting.push(kind),
+            ShelfAction::Withdrawn(kind) => shelf.waiting.retain(|&waiting| waiting != kind),
+            ShelfAction::Begun(kind) => {
+                shelf.waiting.retain(|&waiting| waiting != kind);
+                shelf.running = Some((kind, "beginning".to_owned()));
+            }
             ShelfAction::Doing(doing) => {
                 if let Some((_, now)) = &mut shelf.running {
                     *now = doing;
@@ -302,6 +313,10 @@ mod tests {
         for action in [
             ShelfAction::Begun("order"),
             ShelfAction::Doing("row 1".to_owned()),
+            ShelfAction::Asked("ladder"),
+            ShelfAction::Asked("numerics"),
+            ShelfAction::Asked("growth"),
+            ShelfAction::Withdrawn("numerics"),
             ShelfAction::Ended(found()),
             ShelfAction::Ended(found()),
             ShelfAction::Begun("ladder"),
@@ -309,6 +324,7 @@ mod tests {
         ] {
             shelf = shelf.reduce(action);
         }
+        assert_eq!(shelf.waiting, ["growth"]);
         assert_eq!(shelf.found.keys().copied().collect::<Vec<_>>(), ["order"]);
         assert_eq!(shelf.running, None);
     }

@@ -27,7 +27,7 @@ pub(crate) fn Evidence(props: &EvidenceProps) -> Html {
             <div class="scroll" tabindex="0" role="region" aria-label="The rivals side by side">
                 <table>
                     <thead><tr>
-                        for head in ["rival", "rows", "columns", "root bound", "root gap", "nodes", "bound now", "best found", "root bound checked"] {
+                        for head in ["rival", "rows", "columns", "root bound", "root gap", "nodes", "bound now", "best found", "checked"] {
                             <th scope="col">{ head }</th>
                         }
                     </tr></thead>

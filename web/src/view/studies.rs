@@ -6,7 +6,7 @@ use report::study::{derived, overview, sections};
 use yew::prelude::*;
 
 use crate::browser::share::download;
-use crate::browser::studying::Studying;
+use crate::browser::studying::{Asked, Studying};
 use crate::state::board::Board;
 use crate::state::document::{Document, DocumentAction};
 use crate::state::share::file_of;
@@ -40,13 +40,17 @@ pub(crate) fn Studies(props: &StudiesProps) -> Html {
             if is_running(&shelf, kind) {
                 return studying.stop();
             }
+            if shelf.waiting.contains(&kind) {
+                return studying.withdraw(kind);
+            }
             if !is_ready(&document, kind) {
                 return;
             }
             if let Some(hands) = &hands {
                 hands.document.dispatch(DocumentAction::Study(kind));
             }
-            studying.begin(kind, scenario_of(&document, kind), document.asked(kind, of));
+            let (scenario, instances) = (scenario_of(&document, kind), document.asked(kind, of));
+            studying.ask(Asked { kind, scenario, instances });
         })
     };
     html! {
@@ -84,8 +88,11 @@ fn head(
     begin: &Callback<(&'static str, Of)>,
 ) -> Html {
     let running = is_running(shelf, kind);
+    let waiting = shelf.waiting.contains(&kind);
     let words = if running {
         "Stop"
+    } else if waiting {
+        "Do not ask"
     } else if shelf.found.contains_key(kind) {
         "Ask again"
     } else {
@@ -93,7 +100,7 @@ fn head(
     };
     let several = document.others.len() + 1;
     let first = if kind == PRODUCTION { Of::All } else { Of::Chosen };
-    let disabled = (!running && !is_ready(document, kind)).to_string();
+    let disabled = (!running && !waiting && !is_ready(document, kind)).to_string();
     let all = format!("{words} of all {several} instances");
     html! {
         <div class="heading">
@@ -102,7 +109,7 @@ fn head(
                 <button type="button" data-testid={format!("study-{kind}")} aria-disabled={disabled.clone()}
                     aria-label={format!("{words}: {question}")} onclick={begin.reform(move |_: MouseEvent| (kind, first))}
                 >{ words }</button>
-                if several > 1 && kind != PRODUCTION && !OVER_ALL.contains(&kind) && !running {
+                if several > 1 && kind != PRODUCTION && !OVER_ALL.contains(&kind) && !running && !waiting {
                     <button type="button" data-testid={format!("study-{kind}-all")} aria-disabled={disabled}
                         aria-label={format!("{all}: {question}")} onclick={begin.reform(move |_: MouseEvent| (kind, Of::All))}
                     >{ all.clone() }</button>
@@ -115,6 +122,9 @@ fn head(
 fn body(document: &Document, shelf: &Shelf, kind: &'static str, how: &str) -> Html {
     if let Some((_, doing)) = shelf.running.as_ref().filter(|(running, _)| *running == kind) {
         return html! { <p class="soft" data-testid="study-doing">{ doing.clone() }</p> };
+    }
+    if shelf.waiting.contains(&kind) {
+        return html! { <p class="soft">{ "Waits for the question that is being answered." }</p> };
     }
     let Some(found) = shelf.found.get(kind) else {
         return html! { <p class="soft">{ how.to_owned() }</p> };

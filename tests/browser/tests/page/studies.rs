@@ -80,6 +80,33 @@ async fn a_study_stops_at_once_and_is_kept_with_the_scenario() -> Outcome<()> {
     .await
 }
 
+/// A second question once gave the first one up without a word. It waits for it, can be taken back, and is
+/// asked when the first is at its end or stopped.
+#[tokio::test(flavor = "multi_thread")]
+async fn what_is_asked_meanwhile_waits_its_turn() -> Outcome<()> {
+    visit(Source::File, async |browser| {
+        status(browser, "A", "root solved").await?;
+        for kind in ["growth", "order", "cuts", "numerics"] {
+            browser.still(&format!("[data-testid=study-{kind}]")).await?.click().await?;
+        }
+        let words = "return [...document.querySelectorAll('[data-study] .heading button')]\
+            .map(button => button.innerText).filter(words => words !== 'Ask').join()";
+        let waits = async |wanted: &str| Ok(browser.script(words).await? == wanted);
+        let three = "Do not ask,Do not ask,Stop,Do not ask";
+        browser.until("three wait", SOON, async || waits(three).await).await?;
+        browser.still("[data-testid=study-cuts]").await?.click().await?;
+        let two = "Do not ask,Stop,Do not ask";
+        browser.until("one is taken back", SOON, async || waits(two).await).await?;
+        browser.still("[data-testid=study-growth]").await?.click().await?;
+        let answered = "Ask again,Ask again";
+        browser.until("the others are answered", 4 * SOON, async || waits(answered).await).await?;
+        let answers = "return document.querySelectorAll('[data-study=order] .finding, [data-study=numerics] .finding').length";
+        assert!(browser.script(answers).await?.as_u64() >= Some(2), "both are answered");
+        Ok(())
+    })
+    .await
+}
+
 /// Four machines with a constant that is far too large: the study finds the least that the data prove, and its
 /// button makes of it a rival of its own, with a better bound; the first stays as it was.
 #[tokio::test(flavor = "multi_thread")]

@@ -134,7 +134,7 @@ fn what_no_short_text_shows_is_told_too() {
     let states = |name: &str| BTreeMap::from([(name.to_owned(), FamilyState::In)]);
     let switched = |name: &str, stops: usize| {
         let (Ok((_, found)) | Err(found)) =
-            model(&subsets, &common::stops(stops), &BTreeMap::new(), &states(name));
+            model(&subsets, &crate::common::stops(stops), &BTreeMap::new(), &states(name));
         found.iter().map(|d| d.code).collect::<Vec<_>>()
     };
     assert!(switched("sets", 14).contains(&"subset.on-demand"));
@@ -152,7 +152,7 @@ fn what_no_short_text_shows_is_told_too() {
     let drives = "  A ⊆ V × V  drives\n  w_{i,j} ∀ (i,j) ∈ A  minutes\n";
     let other = stops(drives, "  z_i ≥ w_{i,j} ∀ (i,j) ∈ A (one)\n");
     let (checked, _) = check(&parse(&other).tree);
-    let (_, matched) = assumed(&other, &checked, &common::stops(5), &BTreeMap::new());
+    let (_, matched) = assumed(&other, &checked, &crate::common::stops(5), &BTreeMap::new());
     assert!(matched.iter().any(|d| d.code == "data.matched"), "{matched:?}");
 }
 

@@ -263,7 +263,7 @@ fn every_shipped_text_reads_checks_and_prints() {
             let parsed = hullward_notation::parse(&text);
             let (checked, found) = hullward_notation::check(&parsed.tree);
             let all: Vec<_> = parsed.diagnostics.into_iter().chain(found).collect();
-            assert!(all.is_empty(), "{}\n{}", path.display(), common::shown(&text, &all));
+            assert!(all.is_empty(), "{}\n{}", path.display(), crate::common::shown(&text, &all));
             assert!(checked.is_sound());
             let printed = hullward_notation::print(&parsed.tree);
             assert_eq!(hullward_notation::parse(&printed).tree, parsed.tree, "{printed}");

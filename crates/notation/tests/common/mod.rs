@@ -9,7 +9,7 @@ use model::{Model, Number};
 const NAMES: [&str; 5] = ["Ash", "Birch", "Cedar", "Dogwood", "Elm"];
 
 /// `n` stops with a drive between every two.
-pub fn stops(n: usize) -> Instance {
+pub(crate) fn stops(n: usize) -> Instance {
     let name = |i: usize| NAMES.get(i).map_or_else(|| format!("stop {i}"), |&s| s.to_owned());
     let labels = (0..n).map(name).collect();
     let cells: Vec<_> = (0..n * n).map(|i| Some(Number::from(7 + i * i % 11))).collect();
@@ -17,7 +17,7 @@ pub fn stops(n: usize) -> Instance {
 }
 
 /// An instance with something of every kind.
-pub fn kitchen() -> Instance {
+pub(crate) fn kitchen() -> Instance {
     let mut instance = stops(5);
     let own = |s: &str| s.to_owned();
     instance.set("T", Datum::Integers(vec![1, 2, 3, 4]));
@@ -39,16 +39,16 @@ pub fn kitchen() -> Instance {
     instance
 }
 
-pub fn shown(text: &str, found: &[Diagnostic]) -> String {
+pub(crate) fn shown(text: &str, found: &[Diagnostic]) -> String {
     found.iter().map(|d| format!("{} {}\n", d.code, d.line(text))).collect()
 }
 
 /// The model of a text that has no error and no warning but those about empty families.
-pub fn made(text: &str, instance: &Instance) -> Model {
+pub(crate) fn made(text: &str, instance: &Instance) -> Model {
     made_with(text, instance, &BTreeMap::new())
 }
 
-pub fn made_with(text: &str, instance: &Instance, states: &States) -> Model {
+pub(crate) fn made_with(text: &str, instance: &Instance, states: &States) -> Model {
     match expand(text, instance, &BTreeMap::new(), states) {
         Ok((model, found)) => {
             // on complete data no drive is one-way, and texts that show a spelling mean no model
@@ -65,7 +65,7 @@ pub fn made_with(text: &str, instance: &Instance, states: &States) -> Model {
 }
 
 /// The codes of the errors of a text, in order.
-pub fn errors(text: &str, instance: &Instance) -> Vec<(&'static str, String)> {
+pub(crate) fn errors(text: &str, instance: &Instance) -> Vec<(&'static str, String)> {
     match expand(text, instance, &BTreeMap::new(), &BTreeMap::new()) {
         Ok(_) => Vec::new(),
         Err(found) => {
@@ -76,11 +76,11 @@ pub fn errors(text: &str, instance: &Instance) -> Vec<(&'static str, String)> {
 }
 
 /// A row as text: `x[Ash → Birch] + 2 y − z ≤ 3`.
-pub fn row_text(model: &Model, row: model::RowId) -> String {
+pub(crate) fn row_text(model: &Model, row: model::RowId) -> String {
     exact_row_text(model, &model.row(row))
 }
 
-pub fn exact_row_text(model: &Model, row: &model::Row) -> String {
+pub(crate) fn exact_row_text(model: &Model, row: &model::Row) -> String {
     let mut out = String::new();
     for (column, a) in &row.entries {
         let negative = *a < Number::ZERO;
@@ -106,13 +106,13 @@ pub fn exact_row_text(model: &Model, row: &model::Row) -> String {
 }
 
 /// How long this thread has run, where Linux tells it: other work on the machine does not count.
-pub fn run_time() -> Option<std::time::Duration> {
+pub(crate) fn run_time() -> Option<std::time::Duration> {
     let told = std::fs::read_to_string("/proc/thread-self/schedstat").ok()?;
     told.split(' ').next()?.parse().ok().map(std::time::Duration::from_nanos)
 }
 
 /// All rows of a family.
-pub fn rows_of(model: &Model, family: &str) -> Vec<String> {
+pub(crate) fn rows_of(model: &Model, family: &str) -> Vec<String> {
     let family = model.families().iter().find(|f| f.name == family).expect("no such family");
     family.rows.clone().map(|r| row_text(model, model::RowId(r))).collect()
 }

@@ -3,7 +3,7 @@
 use hullward_tests_reference::round_trip::instance;
 use serde_json::Value;
 
-use crate::{Record, shipped, value_of};
+use super::{Record, shipped, value_of};
 
 pub(crate) fn bent(record: &Record) -> Option<f64> {
     if !record.is("piecewise linear") || record.quantity.starts_with("locally") {

@@ -5,7 +5,7 @@ use std::collections::BTreeMap;
 use hullward_tests_reference::graphs::{Edges, colours_and_sets, graph, network};
 use hullward_tests_reference::round_trip::{formulation, instance, rival, root};
 
-use crate::{Record, row, shipped, value_of, whole};
+use super::{Record, row, shipped, value_of, whole};
 
 pub(crate) fn stable(record: &Record) -> Option<f64> {
     if !record.is("stable set") || record.instance == "queen8" && !whole() {

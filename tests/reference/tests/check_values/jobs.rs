@@ -6,7 +6,7 @@ use hullward_tests_reference::round_trip::{instance, rival, root, solve};
 use hullward_tests_reference::shops::{shop, within_windows};
 use tree::Settings;
 
-use crate::{Record, row, shipped, value_of};
+use super::{Record, row, shipped, value_of};
 
 /// Jobs by their numbers: times, weights, due dates.
 pub(crate) fn machine(record: &Record) -> Option<f64> {

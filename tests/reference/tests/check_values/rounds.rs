@@ -2,7 +2,7 @@
 
 use hullward_tests_reference::open_data;
 
-use crate::{Record, shipped, value_of};
+use super::{Record, shipped, value_of};
 
 /// Rounds with a number of vehicles, or with as many as wanted.
 pub(crate) fn rounds(record: &Record) -> Option<f64> {

@@ -3,7 +3,7 @@
 use hullward_tests_reference::open_data;
 use instance::Datum;
 
-use crate::{Record, shipped, value_of, whole};
+use super::{Record, shipped, value_of, whole};
 
 /// `cap41 (= cap71 capacity 5000)`, `cap71 (capacity 58268)`, or `cap41` alone by the digits.
 pub(crate) fn facilities(record: &Record) -> Option<f64> {

@@ -5,7 +5,7 @@ use hullward_tests_reference::open_data;
 use hullward_tests_reference::round_trip::instance;
 use instance::Instance;
 
-use crate::{Record, row, shipped, value_of};
+use super::{Record, row, shipped, value_of};
 
 fn list(text: &str, name: &str) -> Vec<u32> {
     let from = text.find(&format!("{name}=[")).unwrap() + name.len() + 2;

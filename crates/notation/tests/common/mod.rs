@@ -1,5 +1,7 @@
 //! What the tests share: small instances, and models that must come out.
 
+#![expect(clippy::expect_used, clippy::panic, reason = "the helpers of these tests fail loudly")]
+
 use std::collections::BTreeMap;
 
 use hullward_notation::{Diagnostic, States, model as expand};

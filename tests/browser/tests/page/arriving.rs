@@ -84,12 +84,22 @@ async fn the_page_opens_before_the_engine_has_arrived_and_works_once_it_has() ->
 async fn with_a_processor_four_times_slower_it_opens_within_a_second() -> Outcome<()> {
     visit_traced(Source::File, async |browser| {
         let address = browser.script("return location.href").await?;
-        browser.go(address.as_str().unwrap_or_default()).await?;
-        tokio::time::sleep(Duration::from_millis(500)).await;
-        let tasks = browser.tasks().await?;
-        let opening = tasks.between(BEGIN, "page open")?;
-        let worked: f64 = opening.iter().map(|task| task.worked).sum();
-        eprintln!("{} tasks until the page is open: {worked:.0} ms of a processor", opening.len());
+        let mut worked = f64::INFINITY;
+        // the least of five: other work on the machine only adds
+        for _ in 0..5 {
+            browser.go(address.as_str().unwrap_or_default()).await?;
+            tokio::time::sleep(Duration::from_millis(500)).await;
+            let tasks = browser.tasks().await?;
+            let opening = tasks.between(BEGIN, "page open")?;
+            let taken: f64 = opening.iter().map(|task| task.worked).sum();
+            eprintln!(
+                "{} tasks until the page is open: {taken:.0} ms of a processor",
+                opening.len()
+            );
+            if taken < worked {
+                worked = taken;
+            }
+        }
         assert!(worked > 0.0 && 4.0 * worked <= 1000.0, "{worked} ms");
         Ok(())
     })

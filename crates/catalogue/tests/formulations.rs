@@ -98,7 +98,9 @@ fn on_instances(mut check: impl FnMut(&Entry, Class, &Instance)) {
     for entry in entries() {
         let mut count = 0;
         for class in Class::ALL {
-            for (n, seed) in [(4, 1), (7, 2), (11, 3)] {
+            // 11 items have 55,440 fences of three
+            let large = if entry.id == "ordering/fences" { 9 } else { 11 };
+            for (n, seed) in [(4, 1), (7, 2), (large, 3)] {
                 if let Some(text) = generate(&entry.family, n, class, seed) {
                     check(&entry, class, &read(&text));
                     count += 1;

@@ -61,8 +61,8 @@ pub(crate) fn Bindings(props: &InstanceProps) -> Html {
     }
 }
 
-/// Families whose data the instance holds, where no rival finds all of its own, or only by assumption: one click takes their
-/// rivals in place of these.
+/// Families whose data the instance holds, where no rival finds all of its own, or only by assumption:
+/// one click takes their rivals in place of these.
 fn suits(document: &Document, hands: Option<&Hands>) -> Html {
     if document.suits.is_empty() {
         return Html::default();
@@ -76,14 +76,9 @@ fn suits(document: &Document, hands: Option<&Hands>) -> Html {
             }
         })
     };
-    let told = if document.bindings.iter().all(|line| line.problem.is_empty()) {
-        "The rivals take all of their data by assumption and leave tables unused. Rivals of a family that may suit better:"
-    } else {
-        "No rival finds all of its data here. Take rivals of a family that does, or nearly:"
-    };
     html! {
         <div class="suits" role="group" aria-label="Rivals that suit the instance" data-testid="suits">
-            <p class="small">{ told }</p>
+            <p class="small">{ "No rival finds all of its data here but by assumption. Take rivals of a family that does, or nearly:" }</p>
             <ul class="acts">
                 for suit in document.suits.iter().take(SUITS) {
                     <li key={suit.family.clone()}>

@@ -24,6 +24,8 @@ fn scenario(run: &str) -> String {
 async fn opened(browser: &Browser, run: &str) -> Outcome<()> {
     paste(browser, &scenario(run)).await?;
     browser.shows("9 stops").await?;
+    // The lane of before stands here until then, and its root is solved as well.
+    browser.shows("74 rows").await?;
     status(browser, "A", "root solved").await
 }
 

@@ -110,7 +110,7 @@ async fn five_actions_lead_from_tables_of_another_problem_to_two_rivals_that_run
     visit(Source::File, async |browser| {
         status(browser, "C", "root solved").await?;
         paste(browser, TABLES).await?;
-        browser.shows("No rival finds all of its data here.").await?;
+        browser.shows("No rival finds all of its data here but by assumption.").await?;
         browser.find("button", "facility location, uncapacitated").await?.click().await?;
         let choice = browser.select(&format!("{} select", line("f"))).await?;
         choice.select_by_value("permit").await?;

@@ -130,6 +130,7 @@ const LEFT: [(&str, &str, &str); 22] = [
     ("stable set", "", "cliques of a chessboard: behind HULLWARD_WHOLE"),
     ("CFL", "", "beyond sixteen sites: behind HULLWARD_WHOLE"),
 ];
+
 /// Numbers by `letter0`, `letter1`, ….
 fn row(letter: &str, cells: &[f64]) -> String {
     cells.iter().enumerate().map(|(k, value)| format!("{letter}{k} {value}\n")).collect()

@@ -44,7 +44,10 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
     });
     let document = &props.document;
     html! {
-        <section class="instance" aria-labelledby="instance-heading">
+        <section
+            class="instance" aria-labelledby="instance-heading"
+            aria-busy={is_being_read(document).then_some("true")}
+        >
             <div class="heading">
                 <h2 id="instance-heading">{ "Instance" }</h2>
                 <Instances document={document.clone()} />
@@ -66,6 +69,11 @@ pub(crate) fn Instance(props: &InstanceProps) -> Html {
             </div>
         </section>
     }
+}
+
+/// Whether the text in the box is still to be understood: what is shown is then of the one before.
+fn is_being_read(document: &Document) -> bool {
+    document.reading.is_none() && !needs_none(document)
 }
 
 /// Whether nothing was pasted and no rival waits for it.

@@ -39,10 +39,14 @@ pub(crate) async fn button(browser: &Browser, letter: &str, name: &str) -> Outco
     browser.still(&part(letter, name)).await
 }
 
-/// Puts a text into the instance's box.
+/// Puts a text into the instance's box and waits until it is read: the lanes are those of the text
+/// before until then, roots solved and all.
 pub(crate) async fn paste(browser: &Browser, text: &str) -> Outcome<()> {
     let field = browser.find("textbox", "Paste a distance table").await?;
-    browser.paste(&field, text).await
+    browser.paste(&field, text).await?;
+    let busy = "return document.querySelector('.instance').getAttribute('aria-busy') === 'true'";
+    let read = async || Ok(browser.script(busy).await? == false);
+    browser.until("the text is read", std::time::Duration::from_secs(60), read).await
 }
 
 /// Adds a rival from the catalogue.

@@ -94,7 +94,8 @@ mod tests {
         for entry in &entries {
             assert!(!entry.title.is_empty() && !entry.citation.is_empty(), "{}", entry.id);
             assert!(!entry.assumption.is_empty() && !entry.natural.is_empty(), "{}", entry.id);
-            assert!(!entry.pitfall.is_empty() && !entry.size.is_empty(), "{}", entry.id);
+            let sentences = entry.pitfall.split_inclusive(['.', '?']).count();
+            assert!((2..=4).contains(&sentences) && !entry.size.is_empty(), "{}", entry.id);
         }
     }
 

@@ -47,11 +47,14 @@ pub struct Basis {
 impl Basis {
     /// Packs the statuses, columns before rows.
     pub(crate) fn pack(status: &[Status], columns: usize) -> Self {
-        let mut packed = vec![0u8; status.len().div_ceil(4)];
-        for (i, status) in status.iter().enumerate() {
-            packed[i / 4] |= status.code() << (2 * (i % 4));
-        }
+        let packed = status.chunks(4).map(packed).collect();
         Self { columns: columns as u32, rows: (status.len() - columns) as u32, packed }
+    }
+
+    /// Whether these are the statuses, columns before rows.
+    pub(crate) fn is_of(&self, status: &[Status], columns: usize) -> bool {
+        (self.columns as usize, (self.columns + self.rows) as usize) == (columns, status.len())
+            && status.chunks(4).zip(&self.packed).all(|(four, &byte)| packed(four) == byte)
     }
 
     /// The packed statuses.
@@ -106,6 +109,11 @@ impl Basis {
     }
 }
 
+/// Four statuses, or fewer at the end, in a byte.
+fn packed(four: &[Status]) -> u8 {
+    four.iter().rev().fold(0, |byte, status| byte << 2 | status.code())
+}
+
 /// What was mended when a basis was loaded.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Default)]
 pub struct Repair {
@@ -135,6 +143,12 @@ mod tests {
         let basis = Basis::pack(&all, 4);
         assert_eq!((basis.column_count(), basis.row_count(), basis.packed.len()), (4, 3, 2));
         assert!((0..7).all(|i| basis.status(i) == all[i]));
+        assert!(basis.is_of(&all, 4) && !basis.is_of(&all, 3) && !basis.is_of(&all[..6], 4));
+        for i in 0..7 {
+            let mut other = all;
+            other[i] = if all[i] == Status::Lower { Status::Upper } else { Status::Lower };
+            assert!(!basis.is_of(&other, 4), "{i}");
+        }
         assert!(basis.is_basic_column(1) && basis.is_basic_row(1) && !basis.is_basic_column(5));
         assert!(basis.is_upper_column(0) && basis.is_upper_row(0) && !basis.is_upper_column(4));
     }

@@ -1,6 +1,7 @@
 //! Changes to problem and basis between solves: rows come and go, a basis is loaded.
 
 use crate::basis::{Basis, Repair, Status};
+use crate::care::ATTEMPTS;
 use crate::problem::CleanRow;
 use crate::state::{Core, settled};
 
@@ -57,7 +58,12 @@ impl Core {
     /// Makes a basis current: unknown rows basic, as many basic variables as rows, dependent ones
     /// replaced.
     pub(crate) fn load(&mut self, basis: &Basis) -> Repair {
+        let is_factorised = self.canonical && self.factor.updates() == 0;
         let (n, m) = (self.columns(), self.rows());
+        if is_factorised && basis.is_of(&self.status, n) {
+            self.load_current();
+            return Repair::default();
+        }
         let (known_columns, known_rows) =
             (basis.column_count() as usize, basis.row_count() as usize);
         for j in 0..n + m {
@@ -77,11 +83,8 @@ impl Core {
             Repair { new_rows: m.saturating_sub(known_rows) as u32, dropped: 0, inserted: 0 };
         self.balance(&mut repair);
         let before = std::mem::take(&mut self.head);
-        let is_factorised = self.canonical && self.factor.updates() == 0;
         self.sort_head();
         if is_factorised && before == self.head {
-            // A node right after its parent: the factors are there, and count as made, so that what
-            // came before a loading shows nowhere.
             self.canonical = true;
             self.count_factorisation();
         }
@@ -89,6 +92,16 @@ impl Core {
         repair.dropped += replaced;
         repair.inserted += replaced;
         repair
+    }
+
+    /// Loads the basis that is current, a node right after its parent: the factors are there, and count
+    /// as made, so that what came before a loading shows nowhere.
+    fn load_current(&mut self) {
+        self.care = ATTEMPTS[0];
+        self.restore_given();
+        self.settle_statuses();
+        self.weight.fill(1.0);
+        self.count_factorisation();
     }
 
     /// Makes as many variables basic as there are rows: too many leave from the last column,

@@ -52,6 +52,7 @@ impl Simplex {
         core.factor.clone_from(&checkpoint.factor);
         core.factor_ticks = checkpoint.factor_ticks;
         core.canonical = true;
+        core.kept.forget();
         core.restore_given();
         core.settle_statuses();
         self.machine.forget();

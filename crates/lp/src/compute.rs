@@ -13,14 +13,21 @@ impl Core {
         side.clear();
         self.add_nonbasic(&mut side);
         self.ticks += self.factor.ftran(&mut side);
-        self.violated.clear();
-        self.is_listed.fill(false);
         for position in 0..self.rows() {
             self.basic[position] = side.get(position as u32);
-            self.note_violation(position);
         }
         side.clear();
         self.scratch.flips = side;
+        self.note_violations();
+    }
+
+    /// Sets the stored violations from the basic values.
+    pub(crate) fn note_violations(&mut self) {
+        self.violated.clear();
+        self.is_listed.fill(false);
+        for position in 0..self.rows() {
+            self.note_violation(position);
+        }
     }
 
     /// Adds −N x_N to a vector by row.
@@ -79,6 +86,9 @@ impl Core {
     /// variable is fixed.
     pub(crate) fn wrong_sign(&self, j: usize) -> f64 {
         let d = self.reduced[j];
+        if d == 0.0 {
+            return 0.0;
+        }
         let wrong = match self.status[j] {
             Status::Basic => return 0.0,
             Status::Lower => -d,
@@ -100,6 +110,12 @@ impl Core {
 
     /// ρ = B⁻ᵀe_r into `scratch.rho` and ρ[A, −I] into `scratch.row`.
     pub(crate) fn compute_row(&mut self, position: u32) {
+        self.compute_rho(position);
+        self.price();
+    }
+
+    /// ρ = B⁻ᵀe_r into `scratch.rho`.
+    pub(crate) fn compute_rho(&mut self, position: u32) {
         let mut rho = std::mem::take(&mut self.scratch.rho);
         rho.clear();
         rho.set(position, 1.0);
@@ -111,12 +127,11 @@ impl Core {
             self.scratch.flips = side;
         }
         self.scratch.rho = rho;
-        self.price();
     }
 
     /// ρ[A, −I] into `scratch.row`, row by row of A, without basic and fixed variables. When more
     /// entries are added than there are columns, the places are listed afterwards, in order.
-    fn price(&mut self) {
+    pub(crate) fn price(&mut self) {
         if !self.partition.is_current {
             let (status, lower, upper) = (&self.status, &self.work_lower, &self.work_upper);
             let priced = |j: usize| status[j] != Status::Basic && lower[j] != upper[j];

@@ -37,6 +37,7 @@ mod compute;
 mod condition;
 mod dual;
 mod extended;
+mod kept;
 mod lu;
 mod machine;
 mod outcome;

@@ -153,6 +153,7 @@ impl Machine {
 
     /// The last resort, where the problem is small enough; `reason` is why nothing else is left.
     fn begin_extended(&mut self, core: &mut Core, reason: String) {
+        core.kept.forget();
         self.extended = Extended::begin(core);
         if self.extended.is_none() {
             self.stop(core, StopReason::Numerical(reason));
@@ -189,11 +190,11 @@ impl Machine {
         }
         core.refactor_canonical();
         debug_assert_eq!(core.check(), Ok(()));
-        core.compute_basic();
-        core.compute_reduced();
+        core.evaluate_basic();
+        core.evaluate_reduced();
         let tolerance = core.room.dual;
         if !core.is_primal_feasible() && core.flip_to_right_side(tolerance) {
-            core.compute_basic();
+            core.evaluate_basic();
         }
         let mut released = core.released_optimum();
         if core.care.refines && !matches!(released, Some(Ok(_))) {
@@ -215,6 +216,7 @@ impl Machine {
 
     fn begin_method(&mut self, core: &mut Core, feasible: bool) {
         let may_perturb = self.attempt == 0 && self.round <= PERTURBED_ROUNDS;
+        core.kept.forget();
         if feasible {
             self.primal.may_perturb = may_perturb;
             primal::begin(core, &mut self.primal);

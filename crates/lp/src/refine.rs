@@ -45,15 +45,14 @@ impl Core {
         x.clear();
         (0u32..).zip(&self.basic).for_each(|(position, &value)| x.set(position, value));
         self.refine_forward(&mut side, &mut x);
-        self.violated.clear();
-        self.is_listed.fill(false);
         for position in 0..self.rows() {
             self.basic[position] = x.get(position as u32);
-            self.note_violation(position);
         }
         x.clear();
         self.scratch.tau = x;
         self.scratch.flips = side;
+        self.kept.forget();
+        self.note_violations();
     }
 }
 

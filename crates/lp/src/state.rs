@@ -8,6 +8,7 @@
 use crate::basis::Status;
 use crate::care::{ATTEMPTS, Care};
 use crate::dual::Breakpoint;
+use crate::kept::Kept;
 use crate::lu::{Factor, Workspace};
 use crate::problem::Problem;
 use crate::random::{detoured, half_to_one};
@@ -92,6 +93,7 @@ pub(crate) struct Core {
     pub(crate) factor_ticks: u64,
     pub(crate) care: Care,
     pub(crate) room: Room,
+    pub(crate) kept: Kept,
     pub(crate) scratch: Scratch,
     pub(crate) ticks: u64,
     pub(crate) iterations: u64,
@@ -136,6 +138,7 @@ impl Core {
             factor_ticks: 0,
             care: ATTEMPTS[0],
             room: Room::default(),
+            kept: Kept::default(),
             scratch: Scratch::default(),
             ticks: 0,
             iterations: 0,
@@ -276,6 +279,7 @@ impl Core {
             self.factor.factorise(&mut self.factoring, threshold, self.care.singular);
         self.factor_ticks = ticks;
         self.count_factorisation();
+        self.kept.forget();
         for r in &replaced {
             let out = self.head[r.position as usize] as usize;
             let logical = self.columns() + r.row as usize;
@@ -425,7 +429,9 @@ pub(crate) fn settled(status: Status, lower: f64, upper: f64) -> Status {
 
 /// How far a value is below (negative) or above (positive) its bounds; zero within `room`.
 pub(crate) fn excess(value: f64, lower: f64, upper: f64, room: f64) -> f64 {
-    if value < lower - room - PRIMAL_RELATIVE * lower.abs() {
+    if value >= lower && value <= upper {
+        0.0
+    } else if value < lower - room - PRIMAL_RELATIVE * lower.abs() {
         value - lower
     } else if value > upper + room + PRIMAL_RELATIVE * upper.abs() {
         value - upper

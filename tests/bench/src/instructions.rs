@@ -22,7 +22,7 @@ const NAMES: [&str; 8] = [
 ];
 
 /// Makes a problem ready and, unless only that is asked for, solves it once; with nobody to solve it
-/// and a name that begins with `search:`, searches it once in bare mode.
+/// and a name that begins with `search:`, searches it once in bare mode, plunging.
 pub(crate) fn once(name: &str, seed: u64, who: Option<Solver>) {
     clock::stop();
     if let Some(name) = name.strip_prefix("search:") {

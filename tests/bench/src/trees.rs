@@ -62,20 +62,23 @@ pub(crate) fn run(arguments: &Arguments) {
     };
     let all = problems(&[&NAMES[..], &LARGER[..]].concat());
     bare("best bound, most fractional", &all, &bare_settings(), arguments);
-    let alike = Settings {
-        branching: Branching::Pseudocost,
-        selection: Selection::BestEstimate,
-        ..bare_settings()
-    };
-    bare("plunging, pseudocosts, as microlp's", &all, &alike, arguments);
+    bare("plunging, pseudocosts, as microlp's", &all, &plunging(), arguments);
     full(&problems(&NAMES));
 }
 
-/// One search in bare mode, for a profile.
+/// One search in bare mode, plunging, for a profile.
 pub(crate) fn once(name: &str, seed: u64) {
     let problem = named(name, seed).unwrap_or_else(|| panic!("there is no problem {name}"));
-    let settings = bare_settings();
-    println!("{:?}", ours(&whole_model(&problem), &settings));
+    println!("{:?}", ours(&whole_model(&problem), &plunging()));
+}
+
+/// Nothing on, and walking as microlp's own search does.
+fn plunging() -> Settings {
+    Settings {
+        branching: Branching::Pseudocost,
+        selection: Selection::BestEstimate,
+        ..bare_settings()
+    }
 }
 
 /// Time a node in bare mode, at most so many nodes, ours twice and microlp.

@@ -76,10 +76,11 @@ pub(crate) fn step(core: &mut Core, state: &mut DualState) -> DualStep {
             DualStep::Exhausted
         };
     };
-    core.compute_row(position);
+    core.compute_rho(position);
     if core.mend_weight(position) {
         return DualStep::Moved;
     }
+    core.price();
     if state.may_perturb && !state.perturbed && state.stall >= state.patience {
         perturb::perturb_costs(core, 0);
         state.perturbed = true;

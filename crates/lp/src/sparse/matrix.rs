@@ -36,13 +36,20 @@ impl Matrix {
         self.row_index.len()
     }
 
+    /// Number of entries of a row.
+    pub(crate) fn row_length(&self, row: usize) -> usize {
+        self.row_start[row + 1] - self.row_start[row]
+    }
+
     /// The entries (column, value) of a row, columns ascending.
+    #[inline]
     pub(crate) fn row(&self, row: usize) -> impl Iterator<Item = (u32, f64)> + '_ {
         let range = self.row_start[row]..self.row_start[row + 1];
         self.row_index[range.clone()].iter().copied().zip(self.row_value[range].iter().copied())
     }
 
     /// The entries (row, value) of a column, rows ascending.
+    #[inline]
     pub(crate) fn column(&self, column: usize) -> impl Iterator<Item = (u32, f64)> + '_ {
         let range = self.column_start[column]..self.column_start[column + 1];
         self.column_index[range.clone()]

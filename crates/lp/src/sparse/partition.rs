@@ -14,6 +14,8 @@ pub(crate) struct Partition {
     middle: Vec<u32>,
     index: Vec<u32>,
     value: Vec<f64>,
+    /// Room for the columns that are priced while the rows are made.
+    is_priced: Vec<bool>,
     /// False when statuses or bounds changed behind its back.
     pub(crate) is_current: bool,
 }
@@ -21,25 +23,33 @@ pub(crate) struct Partition {
 impl Partition {
     /// Takes a matrix over anew; `priced` says which columns stand first. Work: the nonzeros.
     pub(crate) fn rebuild(&mut self, matrix: &Matrix, priced: impl Fn(usize) -> bool) {
-        let rows = matrix.row_count();
         self.start.clear();
         self.middle.clear();
-        self.index.clear();
-        self.value.clear();
-        let is_priced: Vec<bool> = (0..matrix.column_count()).map(priced).collect();
-        for row in 0..rows {
-            self.start.push(self.index.len() as u32);
-            for first in [true, false] {
-                for (j, value) in matrix.row(row).filter(|&(j, _)| is_priced[j as usize] == first) {
-                    self.index.push(j);
-                    self.value.push(value);
-                }
-                if first {
-                    self.middle.push(self.index.len() as u32);
-                }
+        self.is_priced.clear();
+        self.is_priced.extend((0..matrix.column_count()).map(priced));
+        self.index.resize(matrix.nonzeros(), 0);
+        self.value.resize(matrix.nonzeros(), 0.0);
+        let mut end = 0;
+        for row in 0..matrix.row_count() {
+            let start = end;
+            self.start.push(start as u32);
+            end += matrix.row_length(row);
+            // Priced entries from the start on, in order; the others from the end back.
+            let (mut first, mut last) = (start, end);
+            for (j, value) in matrix.row(row) {
+                let place = if self.is_priced[j as usize] {
+                    first += 1;
+                    first - 1
+                } else {
+                    last -= 1;
+                    last
+                };
+                self.index[place] = j;
+                self.value[place] = value;
             }
+            self.middle.push(first as u32);
         }
-        self.start.push(self.index.len() as u32);
+        self.start.push(end as u32);
         self.is_current = true;
     }
 

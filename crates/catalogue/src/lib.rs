@@ -20,7 +20,6 @@
 //! | constants of Gilmore and Lawler (Xia & Yuan 2006) | each is the optimum of an assignment, and no expression; `qap/least-ways` has a simpler one |
 //! | facilities as set packing; p-median by substitution (Church 2003) | other columns for the same rows; sets of nearer sites that are equal cannot be asked for in an expression |
 //! | compressed arc flow (Brandão & Pedroso 2016), reduced horizons, dominated columns | an algorithm that makes a graph smaller, not a statement |
-//! | factors by heads and tails (job shop) | sums along a route are recursive; they may be given as data, as the golden models do |
 //! | single-source facilities, knapsacks with choices or set-ups, partitions in place of coverings | other problems, for which no second form is named |
 //! | aggregated coverings | a relaxation of the covering rows that is no formulation |
 //! | quadratic hubs (O'Kelly 1987) | not linear: what it says is linearised in the three forms shipped |

@@ -83,7 +83,7 @@ pub(crate) const FAMILIES: &[Family] = &[
         "machine": "big-m", "linear-ordering", "time-indexed", "parallel", "positions"
     ),
     family!(
-        "job-shop": "disjunctive", "time-indexed", "time-indexed-split", "surplus", "ranks"
+        "job-shop": "disjunctive", "tight", "time-indexed", "time-indexed-split", "surplus", "ranks"
     ),
     family!("rcpsp": "pulse", "pulse-split", "step", "flow", "forbidden-sets", "events"),
     family!(

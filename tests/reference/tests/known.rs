@@ -15,7 +15,7 @@ use hullward_tests_reference::seeded::{extent, families, seeded};
 use tree::Settings;
 
 /// The left rival, how it stands to the right one, and how far that is known.
-const KNOWN: [(&str, &str, &str, Level); 119] = [
+const KNOWN: [(&str, &str, &str, Level); 120] = [
     ("atsp/labels", "⪰", "atsp/assignment", Theorem),
     ("atsp/subtours", "⪰", "atsp/labels", Theorem),
     ("atsp/subtours", "⪰", "atsp/one-commodity", Theorem),
@@ -96,6 +96,7 @@ const KNOWN: [(&str, &str, &str, Level); 119] = [
     ("gap/covers", "⪰", "gap/plain", Theorem),
     ("gap/patterns", "⪰", "gap/covers", Theorem),
     ("job-shop/surplus", "=", "job-shop/disjunctive", Theorem),
+    ("job-shop/tight", "⪰", "job-shop/disjunctive", Theorem),
     ("job-shop/time-indexed", "⪰", "job-shop/disjunctive", Observed),
     ("job-shop/time-indexed-split", "⪰", "job-shop/time-indexed", Theorem),
     ("machine/parallel", "⪰", "machine/big-m", Theorem),

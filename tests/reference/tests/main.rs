@@ -22,6 +22,7 @@ mod mps;
 mod needless;
 mod opinion;
 mod pairs;
+mod patterns;
 mod plain;
 mod presolved;
 mod published;

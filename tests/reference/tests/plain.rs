@@ -15,7 +15,7 @@ use instance::{Datum, Instance};
 use model::nearest_f64;
 use tree::{Settings, Status};
 
-fn number(on: &Instance, name: &str) -> f64 {
+pub(crate) fn number(on: &Instance, name: &str) -> f64 {
     let Some(Datum::Number(value)) = on.get(name) else { panic!("no number {name}") };
     nearest_f64(value)
 }
@@ -29,15 +29,20 @@ fn largest(numbers: impl Iterator<Item = f64>) -> f64 {
     -least(numbers.map(|number| -number))
 }
 
-/// Holds every rival of a family to what `plain` finds.
+/// Holds every rival of a family to what `plain` finds on the instances that optima are compared on.
 fn held(family: &str, plain: impl Fn(&Instance) -> f64) {
     let extent = extent(family);
+    held_on(family, extent.optima, extent.searched, plain);
+}
+
+/// Holds every rival of a family to what `plain` finds on so many instances of each size and class.
+pub(crate) fn held_on(family: &str, sizes: &[u32], seeds: u64, plain: impl Fn(&Instance) -> f64) {
     let rivals: Vec<String> = catalogue::entries()
         .into_iter()
         .filter(|entry| entry.family == family && !entry.relaxation)
         .map(|entry| entry.id)
         .collect();
-    for (name, on) in seeded(family, extent.optima, extent.searched) {
+    for (name, on) in seeded(family, sizes, seeds) {
         let wanted = plain(&on);
         for id in &rivals {
             let found = solve(&rival(id, &on), Settings::default());

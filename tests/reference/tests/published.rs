@@ -13,7 +13,7 @@ use hullward_tests_reference::shops::shop;
 use hullward_tests_reference::theory::{labels, table};
 use hullward_tests_reference::{agree, open_data};
 use instance::{Datum, Instance};
-use model::{Column, Model};
+use model::{Column, ColumnId, Model, RowId, nearest_f64};
 use proof::violations;
 use tree::{Settings, Status};
 
@@ -116,7 +116,7 @@ fn job_shops() {
     ] {
         let Some(text) = open_data(&format!("jobshop/{name}"), "JSPLIB") else { return };
         let on = shop(&text, 2_000);
-        for id in ["job-shop/disjunctive", "job-shop/surplus"] {
+        for id in ["job-shop/disjunctive", "job-shop/tight", "job-shop/surplus"] {
             let found = bound(id, &on);
             assert!(agree(found, longest, 1e-9), "{id} on {name}: {found}");
         }
@@ -135,12 +135,52 @@ fn job_shops() {
 #[test]
 fn the_optimum_of_a_job_shop() {
     let Some(text) = open_data("jobshop/ft06", "JSPLIB") else { return };
-    for id in ["job-shop/disjunctive", "job-shop/surplus"] {
+    for id in ["job-shop/disjunctive", "job-shop/tight", "job-shop/surplus"] {
         let Verdict::Optimal(found) = highs(&rival(id, &shop(&text, 70)), &[], true) else {
             panic!("{id}")
         };
         assert!(agree(found, 55.0, 1e-7), "{id}: {found}");
     }
+}
+
+/// The factors of ft10, whose routes have ten steps: the horizon less tail and head, added up here from
+/// the lines of its file.
+#[test]
+fn factors_of_a_job_shop_leave_out_heads_and_tails() {
+    let Some(text) = open_data("jobshop/ft10", "JSPLIB") else { return };
+    let lines = text.lines().filter(|line| !line.starts_with('#')).skip(1);
+    let jobs: Vec<Vec<f64>> = lines
+        .map(|line| line.split_whitespace().map(|word| word.parse().unwrap()).collect())
+        .collect();
+    // By machine the head and the tail of each job there.
+    let mut ends = vec![Vec::new(); 10];
+    for job in jobs.iter().filter(|job| job.len() == 20) {
+        let all: f64 = job.chunks(2).map(|step| step[1]).sum();
+        let mut head = 0.0;
+        for step in job.chunks(2) {
+            ends[step[0] as usize].push((head, all - head - step[1]));
+            head += step[1];
+        }
+    }
+    let pairs = |machine: &Vec<(f64, f64)>| -> Vec<i64> {
+        let all = machine.iter().enumerate();
+        let others = |i| machine.iter().enumerate().filter(move |&(j, _)| i != j);
+        all.flat_map(|(i, (_, tail))| {
+            others(i).map(move |(_, (head, _))| (2000.0 - tail - head) as i64)
+        })
+        .collect()
+    };
+    let mut wanted: Vec<i64> = ends.iter().flat_map(pairs).collect();
+    let model = rival("job-shop/tight", &shop(&text, 2_000));
+    let orders = |c: &ColumnId| model.columns()[c.index()].integer;
+    let rows = (0..model.row_count()).map(|row| model.row(RowId::from_index(row)));
+    let entries = rows.flat_map(|row| row.entries);
+    let mut found: Vec<i64> =
+        entries.filter(|(c, _)| orders(c)).map(|(_, a)| nearest_f64(&a).abs() as i64).collect();
+    wanted.sort_unstable();
+    found.sort_unstable();
+    assert_eq!(found.len(), 900);
+    assert_eq!(found, wanted);
 }
 
 /// A graph as blocks with so many colours, and all stable sets that hold no further node.

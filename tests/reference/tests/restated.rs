@@ -50,7 +50,7 @@ const SHIPPED: &[(&str, &str, &str)] = &[
     ("gap__std_extcover", "gap", "gap/covers"),
     ("jobshop__liao", "jobshop", "job-shop/surplus"),
     ("jobshop__manne_H", "jobshop", "job-shop/disjunctive"),
-    ("jobshop__manne_tight", "jobshop", "job-shop/disjunctive"),
+    ("jobshop__manne_tight", "jobshop", "job-shop/tight"),
     ("linord__3dicycle", "linord", "ordering/dicycles"),
     ("linord__potential_bigM", "linord", "ordering/labels"),
     ("lotsize__bigM_tight", "lotsize", "lot/big-m"),

@@ -101,7 +101,7 @@ fn machine(rival: &str, data: &Data<'_>) -> Option<Size> {
 fn job_shop(rival: &str, data: &Data<'_>) -> Option<Size> {
     let (j, m, steps, h) = (data.count("J"), data.count("M"), data.count("N"), data.number("H"));
     match rival {
-        "disjunctive" => {
+        "disjunctive" | "tight" => {
             Some((j * m + m * j * (j - 1) / 2 + 1, j * m + steps + m * j * (j - 1), 0))
         }
         "surplus" => {

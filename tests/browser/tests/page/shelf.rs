@@ -43,7 +43,7 @@ async fn the_catalogue_is_searched_and_an_entry_joins() -> Outcome<()> {
         let none = "return document.querySelector('[data-testid=shelf]') === null";
         assert_eq!(browser.script(none).await?, true, "nothing is made before it is opened");
         browser.still("[data-testid=browse]").await?.click().await?;
-        holds(browser, "[data-testid=shelf] [role=status]", "187 formulations in all").await?;
+        holds(browser, "[data-testid=shelf] [role=status]", "188 formulations in all").await?;
         holds(browser, "[data-testid=shelf]", "Position labels (Miller").await?;
 
         search(browser, "cornuejols 1980 radii").await?;

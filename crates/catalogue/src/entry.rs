@@ -1,6 +1,6 @@
 //! The shipped formulations.
 
-use toml::Value;
+use toml::{Table, Value};
 
 use crate::shipped::FAMILIES;
 use crate::{families, tables, text};
@@ -24,6 +24,8 @@ pub struct Entry {
     pub assumption: String,
     /// The variable in which rivals of the family are compared.
     pub natural: String,
+    /// The readers whose instances the family takes, as a scenario file names them.
+    pub readers: Vec<String>,
     /// Size in terms of the numbers of stops, periods or arcs.
     pub size: String,
     /// What goes wrong with it in practice.
@@ -49,6 +51,7 @@ pub fn entries() -> Vec<Entry> {
                 relaxation: formulation.get("relaxation").and_then(Value::as_bool).unwrap_or(false),
                 assumption: text(&table, "assumption").to_owned(),
                 natural: text(&table, "natural").to_owned(),
+                readers: words(&table, "readers"),
                 size: text(formulation, "size").to_owned(),
                 pitfall: text(formulation, "pitfall").to_owned(),
                 text: notation,
@@ -56,6 +59,12 @@ pub fn entries() -> Vec<Entry> {
         }
     }
     out
+}
+
+/// The words of a list.
+fn words(table: &Table, key: &str) -> Vec<String> {
+    let list = table.get(key).and_then(Value::as_array).into_iter().flatten();
+    list.filter_map(Value::as_str).map(str::to_owned).collect()
 }
 
 /// The notation text of an id.
@@ -74,9 +83,7 @@ pub fn find(id: &str) -> Option<Entry> {
 #[must_use]
 pub fn nonnegative(family: &str) -> Vec<String> {
     let table = families().find(|(name, _)| *name == family).map(|(_, table)| table);
-    let names = table.as_ref().and_then(|table| table.get("nonnegative")?.as_array());
-    let names = names.into_iter().flatten().filter_map(Value::as_str);
-    names.map(str::to_owned).collect()
+    table.map(|table| words(&table, "nonnegative")).unwrap_or_default()
 }
 
 #[cfg(test)]
@@ -94,6 +101,7 @@ mod tests {
         for entry in &entries {
             assert!(!entry.title.is_empty() && !entry.citation.is_empty(), "{}", entry.id);
             assert!(!entry.assumption.is_empty() && !entry.natural.is_empty(), "{}", entry.id);
+            assert!(!entry.readers.is_empty(), "{}", entry.id);
             let sentences = entry.pitfall.split_inclusive(['.', '?']).count();
             assert!((2..=4).contains(&sentences) && !entry.size.is_empty(), "{}", entry.id);
         }

@@ -31,6 +31,7 @@ pub(crate) fn list(id: Option<&str>, out: &mut dyn Write, err: &mut dyn Write) -
     }
     writeln!(out, "# size: {}", entry.size)?;
     writeln!(out, "# right for: {}", entry.assumption)?;
+    writeln!(out, "# reads: {}; compared in {}", entry.readers.join(", "), entry.natural)?;
     for known in &entry.known {
         writeln!(out, "# bound: {known}")?;
     }

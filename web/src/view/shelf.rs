@@ -7,7 +7,7 @@ use report::number::of;
 use web_sys::HtmlInputElement;
 use yew::prelude::*;
 
-use crate::state::document::DocumentAction;
+use crate::state::document::{DocumentAction, READERS};
 use crate::state::editor::Edit;
 use crate::state::lane::LaneId;
 use crate::state::pointer::Shared;
@@ -135,6 +135,8 @@ fn Entry(props: &EntryProps) -> Html {
                 { fact("Published", &entry.citation) }
                 { fact("Size", &entry.size) }
                 { fact("Right for", &entry.assumption) }
+                { fact("Reads", &readers(entry)) }
+                { fact("Compared in", &entry.natural) }
                 if !entry.known.is_empty() {
                     <dt>{ "Its bound is" }</dt>
                     for known in &entry.known { <dd>{ known.clone() }</dd> }
@@ -148,6 +150,15 @@ fn Entry(props: &EntryProps) -> Html {
             </div>
         </div>
     }
+}
+
+/// The readers whose instances it takes, in words.
+fn readers(entry: &CatalogueEntry) -> String {
+    let words = entry.readers.iter().map(|reader| {
+        let known = READERS.iter().find(|(name, _)| name == reader);
+        known.map_or(reader.as_str(), |&(_, words)| words)
+    });
+    words.collect::<Vec<_>>().join(", ")
 }
 
 fn fact(name: &'static str, words: &str) -> Html {

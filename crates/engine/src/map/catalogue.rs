@@ -23,6 +23,8 @@ pub(crate) fn catalogue_entries() -> Vec<CatalogueEntry> {
         citation: entry.citation.clone(),
         size: entry.size.clone(),
         assumption: entry.assumption.clone(),
+        natural: entry.natural.clone(),
+        readers: entry.readers.clone(),
         known: known.sentences(&entry.family, &entry.id),
         pitfall: entry.pitfall.clone(),
         text: entry.text.to_owned(),

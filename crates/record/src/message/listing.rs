@@ -19,6 +19,10 @@ pub struct CatalogueEntry {
     pub size: String,
     /// For which data it is right.
     pub assumption: String,
+    /// The variable in which rivals of its family are compared.
+    pub natural: String,
+    /// The readers whose instances its family takes, as a scenario file names them.
+    pub readers: Vec<String>,
     /// What is known of its bound beside those of others, a sentence each.
     pub known: Vec<String>,
     /// What goes wrong with it.

@@ -20,7 +20,7 @@
 //! | constants of Gilmore and Lawler (Xia & Yuan 2006) | each is the optimum of an assignment, and no expression; `qap/least-ways` has a simpler one |
 //! | facilities as set packing; p-median by substitution (Church 2003) | other columns for the same rows; sets of nearer sites that are equal cannot be asked for in an expression |
 //! | compressed arc flow (Brandão & Pedroso 2016), reduced horizons, dominated columns | an algorithm that makes a graph smaller, not a statement |
-//! | single-source facilities, knapsacks with choices or set-ups, partitions in place of coverings | other problems, for which no second form is named |
+//! | single-source facilities, knapsacks with choices or set-ups, lots with backlogging or start-ups, units with ramps, partitions in place of coverings | other problems, for which no second form is named |
 //! | aggregated coverings | a relaxation of the covering rows that is no formulation |
 //! | quadratic hubs (O'Kelly 1987) | not linear: what it says is linearised in the three forms shipped |
 //! | branching on sets (Beale & Tomlin 1970), indicator rows, logarithmic cases | a way to search, or what `piecewise/logarithmic` shows |

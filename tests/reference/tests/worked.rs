@@ -8,6 +8,8 @@ use hullward_tests_reference::agree;
 use hullward_tests_reference::independent::{Verdict, highs};
 use hullward_tests_reference::round_trip::{formulation, instance, rival, root, solve};
 use instance::Instance;
+use model::{Number, RowId, nearest_f64};
+use separate::general::{Aggregate, Frame, from_tableau};
 use tree::{Settings, Status};
 
 /// What the example holds no data for.
@@ -72,6 +74,65 @@ fn an_example_of_bertsimas_and_tsitsiklis() {
         ("  b ≤ 2\n  a ≥ 1", Some(-3.0)),
     ];
     example(text, nodes, -3.0);
+}
+
+/// A row of a printed tableau: the text with the rows so far, by which of them it is multiplied (the
+/// coefficients of the slacks), the vertex, and the cut that follows, `a x + b y ≤ c`.
+type Tableau = (&'static str, &'static [(i32, i32)], [f64; 2], [f64; 3]);
+
+/// Fractional cuts of Gomory as the books derive them: of a row whose slacks have no larger fraction than
+/// its right-hand side the mixed-integer cut is the same. The first four are printed in Wolsey (1998) and in
+/// Bertsimas & Tsitsiklis (1997); the others were derived from the tableaus of Nemhauser & Wolsey (1988)
+/// and of Winston by a program that shares no code with this project.
+#[test]
+fn cuts_of_gomory_follow_from_printed_rows() {
+    let rows: [Tableau; 6] = [
+        (
+            "  7 a − 2 b ≤ 14 (one)\n  b ≤ 3 (two)",
+            &[(1, 7), (2, 7)],
+            [20.0 / 7.0, 3.0],
+            [1.0, 0.0, 2.0],
+        ),
+        ("  2 a − 2 b ≤ 3 (one)\n  a ≤ 2 (two)", &[(-1, 2), (1, 1)], [2.0, 0.5], [1.0, -1.0, 1.0]),
+        (
+            "  6 b − 4 a ≤ 9 (one)\n  a + b ≤ 4 (two)",
+            &[(1, 10), (2, 5)],
+            [1.5, 2.5],
+            [0.0, 1.0, 2.0],
+        ),
+        ("  6 b − 4 a ≤ 9 (one)\n  b ≤ 2 (two)", &[(-1, 4), (3, 2)], [0.75, 2.0], [-3.0, 5.0, 7.0]),
+        (
+            "  2 b − a ≤ 4 (one)\n  5 a + b ≤ 20 (two)",
+            &[(5, 11), (1, 11)],
+            [36.0 / 11.0, 40.0 / 11.0],
+            [0.0, 1.0, 3.0],
+        ),
+        (
+            "  a + b ≤ 6 (one)\n  9 a + 5 b ≤ 45 (two)",
+            &[(-5, 4), (1, 4)],
+            [3.75, 2.25],
+            [3.0, 2.0, 15.0],
+        ),
+    ];
+    for (text, multipliers, vertex, wanted) in rows {
+        let text = format!("Row\n\nmaximise\n  a + b\nsubject to\n{text}\n  a, b ∈ ℤ_+\n");
+        let model = formulation(&text, &none());
+        let frame = Frame::new(&model);
+        let mut sum = Aggregate::default();
+        for (number, &(above, below)) in multipliers.iter().enumerate() {
+            let row = model.row(RowId::from_index(number));
+            let multiplier = Number::from(above) / Number::from(below);
+            assert!(sum.add(&frame, (number, &row), &multiplier, &vertex), "{text}");
+        }
+        let cut = from_tableau(&sum, &frame, &vertex).unwrap_or_else(|| panic!("no cut: {text}"));
+        let mut found = [0.0, 0.0, nearest_f64(cut.row.upper.as_ref().unwrap())];
+        for (column, coefficient) in &cut.row.entries {
+            found[column.index()] = nearest_f64(coefficient);
+        }
+        let scale = wanted[2] / found[2];
+        let same = found.iter().zip(wanted).all(|(&one, other)| agree(one * scale, other, 1e-12));
+        assert!(same && scale > 0.0, "{found:?} for {wanted:?}: {text}");
+    }
 }
 
 /// Nemhauser & Wolsey, Integer and Combinatorial Optimization (1988).

@@ -191,12 +191,24 @@ impl Parser<'_> {
         let named = self.peek() == T::LeftParen && self.tokens[self.at].gap.has(Gap::NEWLINE);
         let close = if named { self.closing(self.at)? } else { return None };
         let next = self.tokens.get(close + 1)?;
-        // (x_i + y_i) min … is a product
-        let dash = |t: &Token| matches!(t.kind, T::Minus | T::Slash);
-        let inner = &self.tokens[self.at..close];
-        let product = inner.iter().any(|t| t.kind.is_operator() && !dash(t))
-            || inner.iter().any(dash) && inner.iter().any(|t| t.kind == T::Underscore);
+        let product = self.is_product(close, part);
         (sense(next.kind) && !product && !next.gap.has(Gap::BLANK_LINE)).then_some(close + 1)
+    }
+
+    /// Whether what stands in parentheses up to `close` is a factor, `(x_i + y_i) min …` or
+    /// `(n x_i) min …`, and not the name of a problem, `(IP-1) min …`, `(P_1 relaxed) min …`.
+    fn is_product(&self, close: usize, part: Part) -> bool {
+        let inner = &self.tokens[self.at + 1..close];
+        let dash = |t: &Token| matches!(t.kind, T::Minus | T::Slash);
+        let indices = inner.iter().filter(|t| t.kind == T::Underscore).count();
+        let operator = inner.iter().any(|t| t.kind.is_operator() && !dash(t));
+        let operator = operator || inner.first().is_some_and(dash);
+        let mut words = inner.iter().filter(|t| t.kind == T::Word);
+        let letters = words.clone().count() > 1 && words.all(|t| t.text.chars().count() == 1);
+        // (2a) min … behind the data is the number of a problem
+        let number = inner.len() > 1 && inner[0].kind == T::Number;
+        let number = number && (indices > 0 || part == Part::Statements);
+        operator || letters || number || indices > 1 || indices > 0 && inner.iter().any(dash)
     }
 
     /// A line with a relation behind the objective is a constraint, "subject to" or not.

@@ -168,12 +168,16 @@ impl Parser<'_> {
         tagged.or(written).or(leading)
     }
 
-    /// `(3)` or `(3a)` before a row, set apart from it: nobody begins a row with such a factor.
+    /// `(3)` or `(3a)` before a row, set apart from it: nobody begins a row with such a factor, and
+    /// `(3 a)` is one.
     fn leading_label(&mut self) -> Option<Label> {
         if self.peek() != T::LeftParen || self.ahead(1) != T::Number {
             return None;
         }
-        let letter = self.ahead(2) == T::Word && self.tokens[self.at + 2].text.len() == 1;
+        let letter = self.ahead(2) == T::Word && {
+            let word = &self.tokens[self.at + 2];
+            word.text.len() == 1 && !word.gap.has(Gap::SPACE)
+        };
         let close = self.at + 2 + usize::from(letter);
         let next = self.tokens.get(close + 1).filter(|_| close + 1 < self.end)?;
         if self.tokens[close].kind != T::RightParen || !next.gap.has(Gap::SPACE) {

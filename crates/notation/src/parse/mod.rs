@@ -333,12 +333,17 @@ mod tests {
     /// A sum in brackets before a least value was taken for the name of a second objective.
     #[test]
     fn a_bracket_before_a_least_value_is_a_factor() {
-        for row in ["(x_i + y_i) min_{j ∈ V} x_j ≤ 1", "(x_i − y_i) min_{j ∈ V} x_j ≤ 1"]
+        for factor in
+            ["x_i + y_i", "x_i − y_i", "x_i x_i", "n x_i", "x_i n", "n Q", "2 x_i", "2 n", "−n"]
         {
+            let row = format!("({factor}) min_{{j ∈ V}} x_j ≤ 1");
             let tree = read(&format!("minimise\n x\nsubject to\n {row} ∀ i ∈ V\n"));
             assert!(matches!(tree.statements[0].left[0].kind, Kind::Multiplicative(..)), "{row}");
         }
-        assert!(read("data\n V\n\n(IP-1) min Σ_{i ∈ V} x_i\n").objective.is_some());
+        for name in ["IP-1", "P", "P_1", "P_1 relaxed", "2a", "1.2"] {
+            let text = format!("data\n V\n\n({name}) min Σ_{{i ∈ V}} x_i\n");
+            assert!(read(&text).objective.is_some(), "{name}");
+        }
     }
 
     #[test]

@@ -286,6 +286,9 @@ proptest! {
 
     #[test]
     fn trees_of_every_kind_read_back(Shown(tree) in formulation()) {
+        // `x = y = 0` is two rows as it is read.
+        let equal = |line: &Line| line.links.iter().all(|(relation, _)| *relation == Relation::Equal);
+        prop_assume!(!tree.statements.iter().any(|line| line.links.len() > 1 && equal(line)));
         for printed in [print(&tree), latex(&tree)] {
             let again = parse(&printed);
             // A domain whose index nothing binds is given its quantifier as it is read, and that is

@@ -85,6 +85,7 @@ impl Core {
         let before = std::mem::take(&mut self.head);
         self.sort_head();
         if is_factorised && before == self.head {
+            // other statuses out of the basis, the same factors
             self.canonical = true;
             self.count_factorisation();
         }

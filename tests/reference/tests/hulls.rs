@@ -4,14 +4,18 @@
 #![allow(clippy::unwrap_used, clippy::panic, reason = "a check fails by it")]
 
 use std::collections::BTreeMap;
+use std::rc::Rc;
 
 use hullward_tests_reference::agree;
+use hullward_tests_reference::parts::Parts;
 use hullward_tests_reference::round_trip::{rival, root, solve};
 use hullward_tests_reference::seeded::seeded;
 use hullward_tests_reference::theory::labels;
 use instance::{Datum, Instance};
 use model::Number;
-use tree::Settings;
+use rand_core::{Rng, SeedableRng};
+use rand_pcg::Pcg32;
+use tree::{Settings, Status};
 
 fn bound(id: &str, on: &Instance) -> f64 {
     root(&rival(id, on)).bound.unwrap()
@@ -72,4 +76,64 @@ fn stock_rows_are_the_hull_where_it_does_not_pay_to_wait() {
         on.set("p", Datum::Table { arity: 1, cells });
         is_hull("lot/wagner-whitin", "lot/big-m", (&name, &on));
     }
+}
+
+/// Vertices of a relaxation, by random costs of all its columns: how many have a whole column that is
+/// fractional.
+fn fractional_vertices(id: &str, on: &Instance) -> usize {
+    let model = rival(id, on);
+    let whole: Vec<bool> = model.columns().iter().map(|column| column.integer).collect();
+    let mut random = Pcg32::seed_from_u64(7);
+    let mut fractional = 0;
+    for _ in 0..10 {
+        let mut parts = Parts::of(&model);
+        for column in &mut parts.columns {
+            column.cost = Number::from(i64::from(random.next_u32() % 19) - 9);
+        }
+        let found = root(&Rc::new(parts.build()));
+        assert_eq!(found.status, Status::Optimal, "{id}");
+        let off = |(x, whole): (&f64, &bool)| *whole && (x - x.round()).abs() > 1e-7;
+        fractional += usize::from(found.x.iter().zip(&whole).any(off));
+    }
+    fractional
+}
+
+/// The instances of a family with nothing asked for: each supplier, each unit stands by itself then, and
+/// a vertex of all is a vertex of each.
+fn apart(family: &str, seeds: u64, nothing: impl Fn(&Instance) -> Datum) -> Vec<Instance> {
+    let all = seeded(family, &[4, 5, 6], seeds).into_iter();
+    let free = all.map(|(_, mut on)| {
+        on.set("d", nothing(&on));
+        on
+    });
+    free.collect()
+}
+
+/// Forms of a bent cost are locally ideal but for the usual convex combination (Croxton, Gendron & Magnanti,
+/// Management Science 49 (2003) 1268-1273; Vielma, Ahmed & Nemhauser, Operations Research 58 (2010) 303-315).
+#[test]
+fn forms_of_a_bent_cost_are_locally_ideal_but_one() {
+    let curves = apart("piecewise", 10, |_| Datum::Number(Number::ZERO));
+    let fractional = |id: &str| curves.iter().map(|on| fractional_vertices(id, on)).sum::<usize>();
+    let ideal =
+        ["incremental", "logarithmic", "multiple-choice", "split-combination", "tight-combination"];
+    for form in ideal {
+        assert_eq!(fractional(&format!("piecewise/{form}")), 0, "{form}");
+    }
+    let usual = fractional("piecewise/convex-combination");
+    // 59 of 1,500
+    assert!(usual > 30, "{usual}");
+}
+
+/// The rows over starts and stops are the hull of the least times on and off (Rajan & Takriti 2005; Malkin 2003);
+/// summed up over the hours they are not.
+#[test]
+fn rows_over_starts_and_stops_are_the_hull_of_least_times() {
+    let units = apart("unit", 10, |on| {
+        let cells = labels(on, "T").into_iter().map(|hour| (vec![hour], Number::ZERO)).collect();
+        Datum::Table { arity: 1, cells }
+    });
+    let fractional = |id: &str| units.iter().map(|on| fractional_vertices(id, on)).sum::<usize>();
+    assert_eq!(fractional("unit/turn-on-off"), 0);
+    assert!(fractional("unit/three-binary-summed") > 100);
 }

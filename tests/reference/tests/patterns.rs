@@ -10,9 +10,9 @@ use std::ops::Range;
 
 use hullward_tests_reference::seeded::extent;
 use hullward_tests_reference::theory::{labels, least, table};
-use instance::{Datum, Instance};
+use instance::Instance;
 
-use crate::plain::{held_on, number};
+use crate::plain::{allocations, held_on, number};
 
 /// A linear program in the making: no less than nothing of anything.
 #[derive(Default)]
@@ -59,19 +59,6 @@ fn cheapest<P>(mut patterns: Vec<(f64, P)>, floor: f64, rest: impl Fn(&P) -> Opt
     best
 }
 
-/// Every list of `count` numbers from 0 to `most`.
-fn lists(count: usize, most: usize) -> impl Iterator<Item = Vec<usize>> {
-    let base = most + 1;
-    let total = (0..count).fold(1, |all, _| all * base);
-    (0..total).map(move |number| {
-        let digit = |(rest, mut list): (usize, Vec<usize>)| {
-            list.push(rest % base);
-            (rest / base, list)
-        };
-        (0..count).fold((number, Vec::new()), |state, _| digit(state)).1
-    })
-}
-
 /// What several items cost to keep where they are made by a pattern of set-ups; stock is what was made
 /// and not yet sold, and a period has hours for set-ups and work.
 struct Shop {
@@ -83,7 +70,7 @@ struct Shop {
 impl Shop {
     fn of(on: &Instance) -> Self {
         let cells = ["d", "f", "h", "a", "b", "Q"].map(|name| (name, table(on, name)));
-        Self { items: labels(on, "I"), periods: numbers(on, "T"), cells: cells.into() }
+        Self { items: labels(on, "I"), periods: labels(on, "T"), cells: cells.into() }
     }
 
     fn of_item(&self, name: &str, i: usize) -> f64 {
@@ -125,18 +112,12 @@ impl Shop {
     }
 }
 
-/// The numbers of a set, ascending, as they are written.
-fn numbers(on: &Instance, name: &str) -> Vec<String> {
-    let Some(Datum::Integers(numbers)) = on.get(name) else { panic!("no numbers {name}") };
-    numbers.iter().map(ToString::to_string).collect()
-}
-
 #[test]
 fn lots_that_share_hours_by_every_pattern_of_set_ups() {
     let extent = extent("clsp");
     held_on("clsp", extent.optima, extent.searched, |on| {
         let shop = Shop::of(on);
-        let all = lists(shop.items.len() * shop.periods.len(), 1);
+        let all = allocations(shop.items.len() * shop.periods.len(), &[0, 1]).into_iter();
         let patterns = all.map(|pattern| (shop.set_ups(&pattern), pattern)).collect();
         cheapest(patterns, 0.0, |pattern| shop.keeping(pattern))
     });
@@ -159,9 +140,10 @@ impl Network {
         Self { nodes, arcs: listed("f"), unit: table(on, "c"), traffic: listed("d"), holds }
     }
 
-    /// More lines than this no arc needs.
-    fn most(&self) -> usize {
-        (self.traffic.iter().map(|pair| pair.1).sum::<f64>() / self.holds).ceil() as usize
+    /// How many lines an arc may have: no more than carry all traffic.
+    fn counts(&self) -> Vec<usize> {
+        let all: f64 = self.traffic.iter().map(|pair| pair.1).sum();
+        (0..=(all / self.holds).ceil() as usize).collect()
     }
 
     /// The cost of carrying all traffic where arcs hold so much; none where they do not hold it.
@@ -198,7 +180,7 @@ fn lines_by_every_list_of_counts() {
         let cost = |counts: &Vec<usize>| -> f64 {
             counts.iter().zip(&network.arcs).map(|(&y, (_, cost))| y as f64 * cost).sum()
         };
-        let all = lists(network.arcs.len(), network.most());
+        let all = allocations(network.arcs.len(), &network.counts()).into_iter();
         let patterns = all.map(|counts| (cost(&counts), counts)).collect();
         cheapest(patterns, floor, |counts: &Vec<usize>| {
             let holds: Vec<f64> = counts.iter().map(|&y| y as f64 * network.holds).collect();
@@ -285,11 +267,11 @@ fn dispatched(load: f64, mut units: Vec<(f64, f64, f64)>) -> Option<f64> {
 #[test]
 fn limits_at_starts_and_stops_by_every_pattern_of_hours_on() {
     held_on("start-limits", &[4], 6, |on| {
-        let (units, hours) = (Unit::all(on), numbers(on, "T"));
+        let (units, hours) = (Unit::all(on), labels(on, "T"));
         let loads = table(on, "d");
         let loads: Vec<f64> = hours.iter().map(|hour| loads[&vec![hour.clone()]]).collect();
         let own = |unit: &Unit| -> Vec<(f64, Vec<usize>)> {
-            let all = lists(hours.len(), 1).filter(|on| unit.may(on));
+            let all = allocations(hours.len(), &[0, 1]).into_iter().filter(|on| unit.may(on));
             all.map(|on| (unit.switching(&on), on)).collect()
         };
         let joined = units.iter().map(own).fold(vec![(0.0, Vec::new())], |all, own| {

@@ -117,7 +117,7 @@ fn groups_by_every_partition() {
 }
 
 /// Every way to give each of `count` places one of `choices`.
-fn allocations(count: usize, choices: &[usize]) -> Vec<Vec<usize>> {
+pub(crate) fn allocations(count: usize, choices: &[usize]) -> Vec<Vec<usize>> {
     (0..count).fold(vec![Vec::new()], |all, _| {
         let longer = |one: Vec<usize>| {
             choices.iter().map(move |&choice| [one.clone(), vec![choice]].concat())

@@ -25,11 +25,17 @@ pub(crate) fn catalogue_entries() -> Vec<CatalogueEntry> {
         assumption: entry.assumption.clone(),
         natural: entry.natural.clone(),
         readers: entry.readers.clone(),
-        known: known.sentences(&entry.family, &entry.id),
+        known: whole(entry).into_iter().chain(known.sentences(&entry.family, &entry.id)).collect(),
         pitfall: entry.pitfall.clone(),
         text: entry.text.to_owned(),
     });
     sent.collect()
+}
+
+/// That its relaxation is integral, where that is known.
+fn whole(entry: &catalogue::Entry) -> Option<String> {
+    let known = !entry.integral.is_empty();
+    known.then(|| format!("that of its best whole plan, whatever the data ({})", entry.integral))
 }
 
 /// A title without who published it.
@@ -85,6 +91,8 @@ mod tests {
             joined.starts_with("never stronger than \u{201c}Split links\u{201d} ("),
             "{joined}"
         );
+        let lots = known("lot/l-s").unwrap_or_default();
+        assert!(lots.starts_with("that of its best whole plan, whatever the data ("), "{lots}");
         let ordered = known("bins/ordered").unwrap_or_default();
         assert!(ordered.contains("(only observed: "), "{ordered}");
         let legs = known("atsp/legs").unwrap_or_default();

@@ -65,6 +65,7 @@ async fn the_catalogue_is_searched_and_an_entry_joins() -> Outcome<()> {
             "never weaker than “Position labels”",
             "now stronger, now weaker than “One-commodity flow”",
             "the drive back",
+            "Compared in",
             "distance table, points in the plane, TSPLIB file",
         ] {
             holds(browser, "[data-testid=entry] dl", words).await?;

@@ -84,50 +84,46 @@ type Tableau = (&'static str, &'static [(i32, i32)], [f64; 2], [f64; 3]);
 /// its right-hand side the mixed-integer cut is the same, of the last two it implies theirs. The first four are
 /// printed in Wolsey (1998) and in Bertsimas & Tsitsiklis (1997); the others were derived from the tableaus of
 /// Nemhauser & Wolsey (1988) and of Winston by a program that shares no code with this project.
+const PRINTED: [Tableau; 8] = [
+    (
+        "  7 a − 2 b ≤ 14 (one)\n  b ≤ 3 (two)",
+        &[(1, 7), (2, 7)],
+        [20.0 / 7.0, 3.0],
+        [1.0, 0.0, 2.0],
+    ),
+    ("  2 a − 2 b ≤ 3 (one)\n  a ≤ 2 (two)", &[(-1, 2), (1, 1)], [2.0, 0.5], [1.0, -1.0, 1.0]),
+    ("  6 b − 4 a ≤ 9 (one)\n  a + b ≤ 4 (two)", &[(1, 10), (2, 5)], [1.5, 2.5], [0.0, 1.0, 2.0]),
+    ("  6 b − 4 a ≤ 9 (one)\n  b ≤ 2 (two)", &[(-1, 4), (3, 2)], [0.75, 2.0], [-3.0, 5.0, 7.0]),
+    (
+        "  2 b − a ≤ 4 (one)\n  5 a + b ≤ 20 (two)",
+        &[(5, 11), (1, 11)],
+        [36.0 / 11.0, 40.0 / 11.0],
+        [0.0, 1.0, 3.0],
+    ),
+    (
+        "  a + b ≤ 6 (one)\n  9 a + 5 b ≤ 45 (two)",
+        &[(-5, 4), (1, 4)],
+        [3.75, 2.25],
+        [3.0, 2.0, 15.0],
+    ),
+    (
+        "  2 b − a ≤ 4 (one)\n  5 a + b ≤ 20 (two)",
+        &[(-1, 11), (2, 11)],
+        [36.0 / 11.0, 40.0 / 11.0],
+        [0.0, 2.0, 7.0],
+    ),
+    (
+        "  a + b ≤ 6 (one)\n  9 a + 5 b ≤ 45 (two)",
+        &[(9, 4), (-1, 4)],
+        [3.75, 2.25],
+        [7.0, 4.0, 35.0],
+    ),
+];
+
 #[test]
 fn cuts_of_gomory_follow_from_printed_rows() {
-    let rows: [Tableau; 8] = [
-        (
-            "  7 a − 2 b ≤ 14 (one)\n  b ≤ 3 (two)",
-            &[(1, 7), (2, 7)],
-            [20.0 / 7.0, 3.0],
-            [1.0, 0.0, 2.0],
-        ),
-        ("  2 a − 2 b ≤ 3 (one)\n  a ≤ 2 (two)", &[(-1, 2), (1, 1)], [2.0, 0.5], [1.0, -1.0, 1.0]),
-        (
-            "  6 b − 4 a ≤ 9 (one)\n  a + b ≤ 4 (two)",
-            &[(1, 10), (2, 5)],
-            [1.5, 2.5],
-            [0.0, 1.0, 2.0],
-        ),
-        ("  6 b − 4 a ≤ 9 (one)\n  b ≤ 2 (two)", &[(-1, 4), (3, 2)], [0.75, 2.0], [-3.0, 5.0, 7.0]),
-        (
-            "  2 b − a ≤ 4 (one)\n  5 a + b ≤ 20 (two)",
-            &[(5, 11), (1, 11)],
-            [36.0 / 11.0, 40.0 / 11.0],
-            [0.0, 1.0, 3.0],
-        ),
-        (
-            "  a + b ≤ 6 (one)\n  9 a + 5 b ≤ 45 (two)",
-            &[(-5, 4), (1, 4)],
-            [3.75, 2.25],
-            [3.0, 2.0, 15.0],
-        ),
-        (
-            "  2 b − a ≤ 4 (one)\n  5 a + b ≤ 20 (two)",
-            &[(-1, 11), (2, 11)],
-            [36.0 / 11.0, 40.0 / 11.0],
-            [0.0, 2.0, 7.0],
-        ),
-        (
-            "  a + b ≤ 6 (one)\n  9 a + 5 b ≤ 45 (two)",
-            &[(9, 4), (-1, 4)],
-            [3.75, 2.25],
-            [7.0, 4.0, 35.0],
-        ),
-    ];
     let mut equal = 0;
-    for (text, multipliers, vertex, wanted) in rows {
+    for (text, multipliers, vertex, wanted) in PRINTED {
         let text = format!("Row\n\nmaximise\n  a + b\nsubject to\n{text}\n  a, b ∈ ℤ_+\n");
         let model = formulation(&text, &none());
         let frame = Frame::new(&model);

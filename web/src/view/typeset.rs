@@ -52,8 +52,11 @@ fn row(props: &SetProps, place: usize, row: &TypesetRow) -> Html {
             if !row.unread.is_empty() {
                 <code>{ row.unread.clone() }</code>
             } else if row.describes {
-                <span>{ math(&row.left) }{ math(&row.right) }<span class="apart">{ math(&row.quantifier) }</span></span>
-                <span class="words">{ row.words.clone() }</span>
+                // A long definition without words does not push the words of the others away.
+                <span class={row.words.is_empty().then_some("whole")}>
+                    { math(&row.left) }{ math(&row.right) }<span class="apart">{ math(&row.quantifier) }</span>
+                </span>
+                if !row.words.is_empty() { <span class="words">{ row.words.clone() }</span> }
             } else {
                 if row.left.is_empty() {
                     <span class="whole">{ math(&row.right) }</span>
